@@ -1,0 +1,203 @@
+// Package catalog is the reference shelf: embedded data on solvents, drying
+// agents, apparatus, prices and practice, each number with its unit, source and
+// confidence. Load reads and validates it; what it returns is read-only.
+package catalog
+
+import "parch/internal/thermo"
+
+// Confidence says what a number rests on.
+type Confidence string
+
+// The grades of confidence, best first.
+const (
+	Published      Confidence = "published"       // seen in print
+	Fitted         Confidence = "fitted"          // parameters fitted to published or recalled data
+	Derived        Confidence = "derived"         // computed from other numbers by a stated method
+	CommonPractice Confidence = "common practice" // a fact of the trade, no source
+	Memory         Confidence = "memory"          // recalled, not verified
+	Invented       Confidence = "invented"        // demonstration data
+)
+
+// Weak reports whether a number of this grade must be marked where it is shown.
+func (c Confidence) Weak() bool { return c == CommonPractice || c == Memory || c == Invented }
+
+// Origin says where a number comes from.
+type Origin struct {
+	Source     string // id of a Source
+	Confidence Confidence
+	Note       string
+}
+
+// Value is one number of the catalog in SI units.
+type Value struct {
+	SI        float64
+	Text      string  // as written in the file, with its unit
+	Low, High float64 // SI; both 0 where no band is given
+	Origin
+}
+
+// Banded reports whether a low and a high value are given.
+func (v Value) Banded() bool { return v.Low != 0 || v.High != 0 }
+
+// Source is a reference in full.
+type Source struct {
+	ID, Reference string
+}
+
+// Curve is a correlation and its origin.
+type Curve struct {
+	thermo.Correlation
+	Unit string // as printed by the source
+	Origin
+}
+
+// Solvent is one solvent (or water) with all that is known of it.
+type Solvent struct {
+	Key, Name, CAS, Formula, Class string
+	Aliases                        []string
+
+	MolarMass, BoilingPoint, MeltingPoint, CriticalTemperature Value  // kg/mol, K, K, K
+	FlashPoint, Autoignition                                   *Value // K; nil where none is known
+	VapourPressure, HeatOfVaporization                         Curve
+	HeatCapacity, Density, Viscosity                           Curve
+	Pure                                                       thermo.Pure // the curves above, ready to evaluate
+
+	Water     *WaterPair // nil for water itself
+	Hazards   Hazards
+	StillRate Value  // 1/s, mixing rate of a still bottle 0.08 m deep (k_mix)
+	HBond     string // "weak" or "strong" acceptor: chooses StillRate
+}
+
+// WaterPair is the NRTL set of water (component 0) and the solvent (component 1).
+type WaterPair struct {
+	A12, B12, A21, B21, Alpha float64
+	TMinK, TMaxK              float64
+	Quality                   string  // A, B or C
+	SolubilityBand            float64 // scatter of published solubility at 25 C, as a factor (1.05 = 5 %)
+	NRTL                      thermo.NRTL
+	Origin
+	FittedTo string
+}
+
+// Hazards lists what must be known before the solvent is heated or dried.
+type Hazards struct {
+	PeroxideClass string // A, B, C, D or "none"
+	PeroxideNote  string
+	Halogenated   bool
+	Flammability  string
+	Toxicity      string
+	IARC          string
+	ExposureLimit string
+	AlkaliNote    string
+	Origin
+}
+
+// Agent is a drying agent named by its material.
+type Agent struct {
+	Key, Name, Kind string // Kind: "sieve", "salt", "reactive", "oxide"
+	Isotherm        *Isotherm
+	BulkDensity     *Value  // kg/m3
+	BeadDiameter    *Value  // m
+	BeadDensity     *Value  // kg/m3, of the bead with its pores
+	BeadPorosity    *Value  // -, macropores
+	BeadTortuosity  *Value  // -
+	HoldUp          *Value  // m3 solvent kept per kg of drained agent
+	Lives           *Value  // uses before discard when regenerated
+	Fade            *Value  // share of capacity lost per regeneration
+	MaxDose         *Value  // kg/m3
+	LoadingBand     float64 // factor either way on the affinity, 1 = none stated
+}
+
+// Isotherm is q = sum_i qs_i b_i p/(1 + b_i p), b_i = b0_i exp(Q_i/(R T)),
+// p in Pa, q in kg water per kg agent.
+type Isotherm struct {
+	Sites []Site
+	Origin
+}
+
+// Site is one term of an Isotherm.
+type Site struct {
+	CapacityKgPerKg float64
+	B0PerPa         float64
+	HeatJPerMol     float64
+}
+
+// History is how a sieve was activated and kept, and what water it still holds.
+type History struct {
+	Key, Text       string
+	TemperatureK    float64 // 0 where the history is not an activation
+	ResidualKgPerKg Value   // kg water per kg sieve, with its band
+}
+
+// Verdict is what the agent matrix says about a solvent and an agent.
+type Verdict struct {
+	Word   string // ok, caution, unsuitable, dangerous
+	Reason string
+	Origin
+}
+
+// Allowed reports whether a route may use the pair without acceptance by name.
+func (v Verdict) Allowed() bool { return v.Word == "ok" || v.Word == "caution" }
+
+// Apparatus is a piece of equipment.
+type Apparatus struct {
+	Key, Name, Kind string // Kind: "still", "receiver", "vessel", "oven"
+	Returns         string // receivers: "light" or "heavy"
+	Volume          *Value // m3: flask, vessel or receiver (usable for water)
+	FillVolume      *Value // m3: receiver, liquid held before anything returns
+	Fill            *Value // share of the volume that may be filled
+	Power           *Value // W
+	Load            *Value // kg per oven run
+	Energy          *Value // J per oven run
+	Life            *Value // s of service
+	Breakage        *Value // share of the price per year
+}
+
+// Price is an indicative default price per unit.
+type Price struct {
+	Item, Label string
+	Unit        string // hour, kwh, m3, kg, litre, each, test
+	Amount      string // decimal text per unit
+	Low, High   string // decimal text, "" where no band is given
+	Currency    string // currency of the source
+	Date        string // ISO date the figure is kept under
+	WaterMax    *Value // dry grades: kg/kg
+	Origin
+}
+
+// Caution is a warning that is shown where it applies.
+type Caution struct {
+	Code, Level, Text string   // Level: "info", "caution", "danger"
+	Steps, Agents     []string // empty: any
+	Classes, Solvents []string // empty: any
+	Peroxide          bool     // only for peroxide formers
+	Flammable         bool     // only for flammable solvents
+	Origin
+}
+
+// Practice is an operating fact by key, such as "heat-share" or "trap-outlet-minimum".
+type Practice map[string]Value
+
+// Catalog is the whole shelf.
+type Catalog struct {
+	Date      string // ISO date of the data
+	Sources   map[string]Source
+	Solvents  map[string]*Solvent
+	Agents    map[string]*Agent
+	Matrix    map[[2]string]Verdict // {class or solvent, agent}; a solvent's own row wins
+	Histories []History
+	Apparatus map[string]*Apparatus
+	Prices    map[string]Price
+	Practice  Practice
+	Cautions  []Caution
+}
+
+// Verdict returns what is known about the solvent and the agent. ok is false
+// where there is no data, which must be treated as a refusal.
+func (c *Catalog) Verdict(solvent *Solvent, agent string) (v Verdict, ok bool) {
+	if v, ok = c.Matrix[[2]string{solvent.Key, agent}]; ok {
+		return v, true
+	}
+	v, ok = c.Matrix[[2]string{solvent.Class, agent}]
+	return v, ok
+}

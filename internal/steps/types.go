@@ -1,0 +1,119 @@
+// Package steps simulates one drying step at a time: what goes in, what comes
+// out, why it stops, and what it uses. Nothing here knows of money.
+package steps
+
+import "parch/internal/thermo"
+
+// Kind is the name of a step.
+type Kind string
+
+// The kinds of step.
+const (
+	Settle Kind = "settle"
+	Trap   Kind = "trap"
+	Soak   Kind = "soak"
+	Buy    Kind = "buy"
+)
+
+// Stop says why a step stops.
+type Stop string
+
+// The reasons to stop.
+const (
+	AtTarget   Stop = "target reached"
+	AtFloor    Stop = "floor"
+	AtPractice Stop = "practical limit"
+	AtTime     Stop = "time"
+	AtCapacity Stop = "capacity"
+	AtGrade    Stop = "grade as sold"
+)
+
+// Lot is an amount of solvent and its water.
+type Lot struct {
+	SolventKg, WaterKg float64
+	TempK              float64
+}
+
+// MassKg is the mass of the whole lot.
+func (l Lot) MassKg() float64 { return l.SolventKg + l.WaterKg }
+
+// Water is the mass fraction of water, kg/kg of solution.
+func (l Lot) Water() float64 { return l.WaterKg / l.MassKg() }
+
+// Head is a head of cost.
+type Head string
+
+// The heads of cost, in the order in which they are shown.
+const (
+	Labour       Head = "labour"
+	Energy       Head = "energy"
+	CoolingWater Head = "cooling_water"
+	Agent        Head = "agent"
+	SolventLost  Head = "solvent_lost"
+	Waste        Head = "waste"
+	Equipment    Head = "equipment"
+	Testing      Head = "testing"
+	Purchase     Head = "purchase"
+)
+
+// Heads lists all heads in order.
+var Heads = []Head{Labour, Energy, CoolingWater, Agent, SolventLost, Waste, Equipment, Testing, Purchase}
+
+// Use is an amount of something that is paid for.
+type Use struct {
+	Head     Head
+	Item     string  // price item, such as "technician", "electricity", "sieve-3a", "toluene", "still-20l"
+	Unit     string  // hour, kwh, m3, kg, litre, each, test: the unit of the price
+	Quantity float64 // per batch, or per year where PerYear is set
+	PerYear  bool    // shared by the batches of a year
+	Basis    string  // how the quantity came about, for the reader
+}
+
+// Balance closes what went in against what came out, kg.
+type Balance struct {
+	WaterInKg, WaterOutKg, WaterRemovedKg       float64
+	SolventInKg, SolventOutKg, SolventRemovedKg float64
+	HeatInJ, HeatUsedJ                          float64
+}
+
+// Point is a point of a step's course.
+type Point struct {
+	Hours     float64
+	Water     float64 // kg/kg in the solvent
+	BoiledKg  float64 // trap: vapour boiled up so far
+	AqueousM3 float64 // trap: aqueous layer collected so far
+}
+
+// Outcome is what a step did.
+type Outcome struct {
+	Kind          Kind
+	Agent         string
+	In, Out       Lot
+	Floor         float64 // kg/kg; NaN where the step has none
+	Why           Stop
+	WhyText       string // the reason in a sentence
+	HoursTotal    float64
+	HoursAttended float64
+	EnergyKWh     float64
+	CoolingWaterL float64
+	AgentKg       float64 // agent charged
+	SolventLostL  float64
+	WasteKg       float64
+	Uses          []Use
+	Balance       Balance
+	Course        []Point
+	Figures       []Figure
+	Warnings      []string
+}
+
+// Figure is a number of a step worth showing, in the unit it is shown in.
+type Figure struct {
+	Name, Unit string
+	Value      float64
+}
+
+// Mixture is water and a solvent: what the steps need of the catalog.
+type Mixture struct {
+	Water, Solvent thermo.Pure
+	NRTL           thermo.NRTL
+}

@@ -1,0 +1,55 @@
+// Package study runs the whole line: job and catalog in, report out.
+package study
+
+import (
+	"parch/catalog"
+	"parch/internal/costs"
+	"parch/internal/job"
+	"parch/internal/routes"
+)
+
+// Report is everything that the terminal, the JSON and the workbook show.
+type Report struct {
+	Version     string
+	CatalogDate string
+	Job         *job.Job
+	Seed        int64
+	Draws       int
+	Book        costs.Book // prices that the bills use
+	Lots        []Lot
+	Sources     []catalog.Source // cited, sorted by id
+	Weak        []Weak           // numbers that rest on memory, practice or assumption
+	Warnings    []string
+}
+
+// Weak is a number that rests on memory, common practice or an assumption.
+type Weak struct {
+	What, Value, Confidence, Source, Note string
+}
+
+// Lot is the answer for one lot.
+type Lot struct {
+	Job         job.Lot
+	Solvent     *catalog.Solvent
+	AcceptAt    float64 // kg/kg; NaN where the target cannot be shown
+	CannotShow  string  // why, or ""
+	Uncertainty float64 // kg/kg, U of the mean of the injections
+	Injections  int
+	NothingToDo string  // why no drying is needed, or ""
+	Routes      []Route // ranked first, then those that miss, nearest first
+	Excluded    []routes.Excluded
+	Warnings    []string
+}
+
+// Route is one compared route.
+type Route struct {
+	ID, Label string
+	Rank      int // 1 is best; 0 where the target is missed
+	Run       routes.Run
+	Bill      costs.Bill
+	Cautions  []catalog.Caution
+	Warnings  []string
+}
+
+// Meets reports whether the route reaches the acceptance limit.
+func (r Route) Meets() bool { return r.Run.Meets }

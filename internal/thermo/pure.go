@@ -1,0 +1,18 @@
+// Package thermo computes pure-component properties, activity coefficients,
+// boiling points, liquid splits and azeotropes of water and solvents.
+//
+// All quantities are SI: kelvin, pascal, mole, kilogram, cubic metre, joule.
+// The vapour is an ideal gas; the liquid follows NRTL (modified Raoult's law).
+package thermo
+
+// Pure holds what the equations need of one component.
+type Pure struct {
+	Key                  string
+	MolarMassKgPerMol    float64
+	MeltingK             float64
+	VapourPressurePa     Correlation
+	HeatOfVaporizationJ  Correlation // J/mol
+	HeatCapacityJPerMolK Correlation // liquid
+	DensityKgPerM3       Correlation // liquid
+	ViscosityPaS         Correlation // liquid
+}
