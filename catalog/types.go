@@ -13,13 +13,16 @@ const (
 	Published      Confidence = "published"       // seen in print
 	Fitted         Confidence = "fitted"          // parameters fitted to published or recalled data
 	Derived        Confidence = "derived"         // computed from other numbers by a stated method
+	Assumption     Confidence = "assumption"      // chosen here, with the reason in the note
 	CommonPractice Confidence = "common practice" // a fact of the trade, no source
 	Memory         Confidence = "memory"          // recalled, not verified
 	Invented       Confidence = "invented"        // demonstration data
 )
 
 // Weak reports whether a number of this grade must be marked where it is shown.
-func (c Confidence) Weak() bool { return c == CommonPractice || c == Memory || c == Invented }
+func (c Confidence) Weak() bool {
+	return c == Assumption || c == CommonPractice || c == Memory || c == Invented
+}
 
 // Origin says where a number comes from.
 type Origin struct {
@@ -62,6 +65,7 @@ type Solvent struct {
 	HeatCapacity, Density, Viscosity                           Curve
 	Pure                                                       thermo.Pure // the curves above, ready to evaluate
 
+	KnownMiss string     // where the curves are known to be off and why; "" for most
 	Water     *WaterPair // nil for water itself
 	Hazards   Hazards
 	StillRate Value  // 1/s, mixing rate of a still bottle 0.08 m deep (k_mix)
@@ -73,7 +77,8 @@ type WaterPair struct {
 	A12, B12, A21, B21, Alpha float64
 	TMinK, TMaxK              float64
 	Quality                   string  // A, B or C
-	SolubilityBand            float64 // scatter of published solubility at 25 C, as a factor (1.05 = 5 %)
+	SolubilityBand            float64 // scatter of published solubility at 25 C, as a factor (1.05 = 5 %); 1 where none is stated
+	BandOrigin                Origin  // of SolubilityBand
 	NRTL                      thermo.NRTL
 	Origin
 	FittedTo string
@@ -89,6 +94,13 @@ type Hazards struct {
 	IARC          string
 	ExposureLimit string
 	AlkaliNote    string
+	Facts         []Fact // the same, each with its origin
+	Origin               // of the peroxide class
+}
+
+// Fact is a statement in words and its origin.
+type Fact struct {
+	What, Text string
 	Origin
 }
 
@@ -142,7 +154,8 @@ func (v Verdict) Allowed() bool { return v.Word == "ok" || v.Word == "caution" }
 // Apparatus is a piece of equipment.
 type Apparatus struct {
 	Key, Name, Kind string // Kind: "still", "receiver", "vessel", "oven"
-	Returns         string // receivers: "light" or "heavy"
+	Returns         string // receivers: "light", "heavy" or "either"
+	SetUp           *Value // s, beyond the usual set-up of a trap
 	Volume          *Value // m3: flask, vessel or receiver (usable for water)
 	FillVolume      *Value // m3: receiver, liquid held before anything returns
 	Fill            *Value // share of the volume that may be filled
@@ -171,7 +184,8 @@ type Caution struct {
 	Steps, Agents     []string // empty: any
 	Classes, Solvents []string // empty: any
 	Peroxide          bool     // only for peroxide formers
-	Flammable         bool     // only for flammable solvents
+	Reclaimed         bool     // only for reclaimed lots
+	Flammable         bool     // only for solvents with a flash point
 	Origin
 }
 
@@ -189,7 +203,19 @@ type Catalog struct {
 	Apparatus map[string]*Apparatus
 	Prices    map[string]Price
 	Practice  Practice
+	Emissions map[string]Value // kg CO2e per kg by "making/KEY" and "burning/KEY"; "electricity" per kWh
+	Assays    map[string]Assay // "coulometric", "volumetric"
 	Cautions  []Caution
+}
+
+// Assay is a Karl Fischer method as it is practised.
+type Assay struct {
+	Key            string
+	Repeatability  Value // kg/kg, r = 2.77 standard deviations
+	DetectionLimit Value // kg/kg
+	Highest        Value // kg/kg, above it the other method is advised
+	Injections     int   // of which the mean is reported
+	Sample         Value // kg per injection
 }
 
 // Verdict returns what is known about the solvent and the agent. ok is false

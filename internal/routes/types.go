@@ -4,6 +4,8 @@
 package routes
 
 import (
+	"errors"
+	"fmt"
 	"strings"
 
 	"parch/internal/steps"
@@ -35,7 +37,33 @@ type Settings struct {
 	HandOverMgPerKg []float64 `json:"hand_over_mg_per_kg"`  // water after each stage but the last
 	SoakHours       []float64 `json:"soak_hours,omitempty"` // one for each soak
 	Sieve           []string  `json:"sieve,omitempty"`      // "regenerate" or "discard", one for each soak
-	StillCharges    int       `json:"still_charges,omitempty"`
+}
+
+// ErrRefused means that the physics refuses a step of a route on this lot.
+var ErrRefused = errors.New("refused")
+
+// Fit reports settings that do not belong to the route.
+func (s Settings) Fit(r Route) error {
+	soaks := 0
+	for _, stage := range r {
+		if stage.Kind == steps.Soak {
+			soaks++
+		}
+	}
+	if len(s.HandOverMgPerKg) != len(r)-1 || len(s.SoakHours) != soaks || len(s.Sieve) != soaks {
+		return fmt.Errorf("%s: the given settings do not fit: %d hand-overs, %d soak hours, %d sieve choices", r.ID(), len(s.HandOverMgPerKg), len(s.SoakHours), len(s.Sieve))
+	}
+	for _, h := range s.SoakHours {
+		if !(h > 0) {
+			return fmt.Errorf("%s: a soak of %g h is not possible", r.ID(), h)
+		}
+	}
+	for _, after := range s.Sieve {
+		if after != Regenerate && after != Discard {
+			return fmt.Errorf("%s: sieve %q is not one of %s, %s", r.ID(), after, Regenerate, Discard)
+		}
+	}
+	return nil
 }
 
 // Run is a route carried out.

@@ -2,8 +2,6 @@
 // out, why it stops, and what it uses. Nothing here knows of money.
 package steps
 
-import "parch/internal/thermo"
-
 // Kind is the name of a step.
 type Kind string
 
@@ -69,6 +67,29 @@ type Use struct {
 	Basis    string  // how the quantity came about, for the reader
 }
 
+// Loss is solvent that does not reach the product.
+type Loss struct {
+	Cause     string
+	SolventKg float64
+}
+
+// Discard is what has to be disposed of.
+type Discard struct {
+	Class WasteClass
+	What  string
+	Kg    float64
+}
+
+// WasteClass sorts what is discarded.
+type WasteClass string
+
+// The classes of waste.
+const (
+	AqueousWaste  WasteClass = "aqueous"
+	SolventWaste  WasteClass = "solvent"
+	WetSolidWaste WasteClass = "wet solid"
+)
+
 // Balance closes what went in against what came out, kg.
 type Balance struct {
 	WaterInKg, WaterOutKg, WaterRemovedKg       float64
@@ -99,7 +120,8 @@ type Outcome struct {
 	AgentKg       float64 // agent charged
 	SolventLostL  float64
 	WasteKg       float64
-	Uses          []Use
+	Losses        []Loss
+	Discards      []Discard
 	Balance       Balance
 	Course        []Point
 	Figures       []Figure
@@ -110,10 +132,4 @@ type Outcome struct {
 type Figure struct {
 	Name, Unit string
 	Value      float64
-}
-
-// Mixture is water and a solvent: what the steps need of the catalog.
-type Mixture struct {
-	Water, Solvent thermo.Pure
-	NRTL           thermo.NRTL
 }

@@ -34,6 +34,7 @@ type Lot struct {
 	AcceptAt    float64 // kg/kg; NaN where the target cannot be shown
 	CannotShow  string  // why, or ""
 	Uncertainty float64 // kg/kg, U of the mean of the injections
+	Detection   float64 // kg/kg, detection limit of the test
 	Injections  int
 	NothingToDo string  // why no drying is needed, or ""
 	Routes      []Route // ranked first, then those that miss, nearest first
@@ -44,7 +45,8 @@ type Lot struct {
 // Route is one compared route.
 type Route struct {
 	ID, Label string
-	Rank      int // 1 is best; 0 where the target is missed
+	Rank      int     // 1 is best; 0 where the target is missed
+	Objective float64 // value of the job's objective: money per litre, h, kg or kWh
 	Run       routes.Run
 	Bill      costs.Bill
 	Cautions  []catalog.Caution

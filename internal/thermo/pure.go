@@ -9,7 +9,7 @@ package thermo
 type Pure struct {
 	Key                  string
 	MolarMassKgPerMol    float64
-	MeltingK             float64
+	MeltingK, CriticalK  float64
 	VapourPressurePa     Correlation
 	HeatOfVaporizationJ  Correlation // J/mol
 	HeatCapacityJPerMolK Correlation // liquid

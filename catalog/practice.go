@@ -1,0 +1,76 @@
+package catalog
+
+import (
+	"strings"
+
+	"parch/internal/document"
+	"parch/internal/quantity"
+)
+
+// perMole marks a volume per mole, which no other number needs.
+const perMole quantity.Dimension = "a molar volume" // m3/mol
+
+// practiceKeys are the operating facts that the steps ask for.
+var practiceKeys = map[string]quantity.Dimension{
+	"heat-share":            quantity.Share,
+	"trap-outlet-minimum":   quantity.WaterContent,
+	"trap-efficiency":       quantity.Share,
+	"trap-efficiency-below": quantity.WaterContent,
+	"trap-reflux-minimum":   quantity.Time,
+	"trap-setup":            quantity.Time,
+	"trap-attended-share":   quantity.Share,
+	"trap-shutdown":         quantity.Time,
+	"draining-time":         quantity.Time,
+	"cooling-flow":          quantity.Flow,
+	"cooling-flow-minimum":  quantity.Flow,
+	"cooling-rise":          quantity.TemperatureDifference,
+	"vapour-loss-per-day":   quantity.Share,
+	"still-fill":            quantity.Share,
+	"settle-time":           quantity.Time,
+	"settle-attended":       quantity.Time,
+	"settle-interface":      quantity.Share,
+	"soak-attended":         quantity.Time,
+	"oven-attended":         quantity.Time,
+	"dose-maximum":          quantity.MassConcentration,
+	"still-rate-weak":       quantity.Rate,
+	"still-rate-strong":     quantity.Rate,
+	"still-rate-depth":      quantity.Length,
+	"water-molar-volume":    perMole,
+	"karl-fischer-time":     quantity.Time,
+	"buy-attended":          quantity.Time,
+	"site-room":             quantity.Temperature,
+	"site-pressure":         quantity.Pressure,
+	"site-receiver":         quantity.Temperature,
+	"site-humidity":         quantity.Share,
+	"site-attended-per-day": quantity.Time,
+	"site-peroxide-limit":   quantity.MassConcentration,
+}
+
+func (s *shelf) readPractice() {
+	s.cat.Practice = Practice{}
+	f := s.root(practiceFile).Map(keysOf(practiceKeys)...)
+	for _, key := range keysOf(practiceKeys) {
+		n := f.Need(key)
+		if practiceKeys[key] == perMole {
+			s.cat.Practice[key] = s.molarVolume(n)
+			continue
+		}
+		s.cat.Practice[key] = s.value(n, practiceKeys[key])
+	}
+}
+
+// molarVolume reads "18.9 cm3/mol".
+func (s *shelf) molarVolume(n *document.Node) Value {
+	if n == nil {
+		return Value{}
+	}
+	f := n.Map(with("value")...)
+	v := Value{Text: f.Need("value").Text(), Origin: s.origin(f)}
+	volume, ok := strings.CutSuffix(v.Text, "/mol")
+	reading, err := quantity.Parse(volume, quantity.Volume)
+	if v.Text != "" && (!ok || err != nil || reading.SI <= 0 || reading.SI > 1e-3) {
+		f.Get("value").Fail(`%q is not a molar volume up to 1000 cm3/mol; write it like "18.9 cm3/mol"`, v.Text)
+	}
+	v.SI = reading.SI
+	return v
+}

@@ -1,0 +1,131 @@
+package catalog
+
+import (
+	"math"
+	"strings"
+
+	"parch/internal/document"
+	"parch/internal/quantity"
+	"parch/internal/thermo"
+)
+
+// validate checks what only the whole shelf can tell.
+func (s *shelf) validate() {
+	s.checkAliases()
+	s.checkPairs()
+	s.checkCitations()
+}
+
+const (
+	standardPa             = 101325.0
+	boilingPointWithinK  = 0.5  // vapour pressure curve against the stated boiling point
+	clapeyronWithin      = 0.09 // its slope against the heat of vaporization
+	clapeyronDifferenceK = 0.01
+)
+
+// checkSolvent compares the numbers of a solvent with each other.
+func (s *shelf) checkSolvent(root *document.Node, f document.Fields, v *Solvent) {
+	s.at["solvent "+v.Key] = root
+	for _, p := range properties {
+		checkCurve(f.Get(p.key), p, v)
+	}
+	tm, tb, tc := v.MeltingPoint.SI, v.BoilingPoint.SI, v.CriticalTemperature.SI
+	if tm == 0 || tb == 0 || tc == 0 {
+		return // said already
+	}
+	if !(tm < tb && tb < tc) {
+		f.Get("boiling point").Fail("melting, boiling and critical temperature do not rise: %.4g, %.4g, %.4g K", tm, tb, tc)
+		return
+	}
+	if v.FlashPoint != nil && v.FlashPoint.SI >= tb {
+		f.Get("flash point").Fail("must lie below the boiling point")
+	}
+	if f.Has("vapour pressure") && v.VapourPressure.Check() == nil {
+		checkBoiling(f, v, readAllowance(f.Get("known miss"), v))
+	}
+}
+
+// allowance is how far the curves of a solvent may disagree.
+type allowance struct{ boilingPointK, slope float64 }
+
+// readAllowance widens the usual limits for a solvent that is known to be off,
+// which must say why.
+func readAllowance(n *document.Node, v *Solvent) allowance {
+	a := allowance{boilingPointWithinK, clapeyronWithin}
+	if n == nil {
+		return a
+	}
+	f := n.Map("boiling point", "slope", "why")
+	v.KnownMiss = f.Need("why").Text()
+	if k := f.Get("boiling point"); k != nil {
+		reading, _ := k.Quantity(quantity.TemperatureDifference)
+		a.boilingPointK = reading.SI
+	}
+	if share := f.Get("slope"); share != nil {
+		reading, _ := share.Quantity(quantity.Share)
+		a.slope = reading.SI
+	}
+	return a
+}
+
+// checkBoiling compares the vapour pressure with the boiling point and, through
+// Clausius-Clapeyron for an ideal vapour, with the heat of vaporization.
+func checkBoiling(f document.Fields, v *Solvent, may allowance) {
+	computedK, err := thermo.Boil(&v.Pure, standardPa)
+	if err != nil {
+		f.Get("vapour pressure").Fail("%v", err)
+		return
+	}
+	if diff := computedK - v.BoilingPoint.SI; math.Abs(diff) > may.boilingPointK {
+		f.Get("vapour pressure").Fail("gives a boiling point of %.2f K, %+.2f K from the one stated; within %.2g K is wanted",
+			computedK, diff, may.boilingPointK)
+	}
+	if f.Has("heat of vaporization") && v.HeatOfVaporization.Check() == nil {
+		slopeJ := clapeyronJ(v.Pure.VapourPressurePa, computedK)
+		ratio := slopeJ / v.HeatOfVaporization.At(computedK)
+		if !(math.Abs(ratio-1) <= may.slope) {
+			f.Get("heat of vaporization").Fail("the slope of the vapour pressure at the boiling point gives %.4g kJ/mol, %.2f times the curve; within %.0f %% is wanted",
+				slopeJ/1e3, ratio, 100*may.slope)
+		}
+	}
+}
+
+// clapeyronJ is R T^2 d ln P/dT, J/mol: the heat of vaporization if the vapour
+// were ideal and the liquid without volume. At the boiling point it is 2 to 5 %
+// above the real one.
+func clapeyronJ(pressure thermo.Correlation, tK float64) float64 {
+	const d = clapeyronDifferenceK
+	slope := math.Log(pressure.At(tK+d)/pressure.At(tK-d)) / (2 * d)
+	return thermo.GasConstant * tK * tK * slope
+}
+
+// checkAliases makes sure that a name means one solvent.
+func (s *shelf) checkAliases() {
+	owner := map[string]string{}
+	for _, key := range keysOf(s.cat.Solvents) {
+		v := s.cat.Solvents[key]
+		own := map[string]bool{}
+		for _, name := range append([]string{v.Key, v.Name, v.CAS}, v.Aliases...) {
+			folded := strings.ToLower(name)
+			if other, taken := owner[folded]; taken && !own[folded] {
+				s.at["solvent "+v.Key].Fail("%q also names %s", name, other)
+			}
+			owner[folded], own[folded] = v.Key, true
+		}
+	}
+}
+
+// checkPairs makes sure that the matrix speaks of every solvent with every agent.
+func (s *shelf) checkPairs() {
+	for _, key := range keysOf(s.cat.Solvents) {
+		v := s.cat.Solvents[key]
+		if key == waterKey {
+			continue
+		}
+		for _, agent := range keysOf(s.cat.Agents) {
+			if _, ok := s.cat.Verdict(v, agent); !ok {
+				s.root(matrixFile).Fail("nothing is said of %s with %s (class %q)", v.Key, agent, v.Class)
+			}
+		}
+	}
+}

@@ -1,0 +1,197 @@
+package cli
+
+import (
+	"bytes"
+	"context"
+	"errors"
+	"fmt"
+	"path/filepath"
+	"strings"
+
+	"github.com/urfave/cli/v2"
+
+	"parch/catalog"
+	"parch/internal/job"
+	"parch/internal/report"
+	"parch/internal/study"
+	"parch/internal/workbook"
+)
+
+const defaultWorkbook = "drying-routes.xlsx"
+
+func (p *program) compare() *cli.Command {
+	return command(cli.Command{
+		Name:      "compare",
+		Usage:     "compare the routes for the lots of a job and write the workbook",
+		UsageText: "parch compare JOB | --demo [flags]",
+		Description: "JOB is a job file; - reads it from standard input. The ranking is printed and the workbook\n" +
+			"written, also where no route reaches a target: then the exit status is 1.",
+		Flags: []cli.Flag{
+			&cli.BoolFlag{Name: "demo", Usage: "run the built-in example, whose prices are invented"},
+			&cli.StringFlag{Name: "workbook", Value: defaultWorkbook, Usage: "write the workbook to `F.xlsx`"},
+			&cli.StringFlag{Name: "json", Usage: "write the results as JSON to `F`, or to standard output in place of the text with -"},
+			&cli.StringFlag{Name: "settings-from", Usage: "take the settings of an earlier run's JSON `F.json` instead of tuning again"},
+			&cli.BoolFlag{Name: "force", Usage: "write over files that are there already"},
+			&cli.BoolFlag{Name: "quiet", Usage: "print errors only"},
+		},
+		Action: p.runCompare,
+	})
+}
+
+// request is what a compare command asks for.
+type request struct {
+	job, workbook, json, settings string
+	demo, force, quiet            bool
+}
+
+func (p *program) runCompare(c *cli.Context) error {
+	q := request{
+		workbook: c.String("workbook"), json: c.String("json"), settings: c.String("settings-from"),
+		demo: c.Bool("demo"), force: c.Bool("force"), quiet: c.Bool("quiet"),
+	}
+	if err := q.complete(c); err != nil {
+		return err
+	}
+	if err := q.outputsFree(); err != nil {
+		return err
+	}
+	cat, err := catalog.Load()
+	if err != nil {
+		return failed(err)
+	}
+	j, err := p.readJob(q.job, q.demo, cat)
+	if err != nil {
+		return err
+	}
+	opts, err := p.readSettings(q.settings)
+	if err != nil {
+		return err
+	}
+	r, err := study.Compare(c.Context, j, cat, opts)
+	if err != nil {
+		return failed(err)
+	}
+	return p.deliver(c.Context, q, r)
+}
+
+// complete takes the job from the arguments and refuses what does not fit together.
+func (q *request) complete(c *cli.Context) (err error) {
+	switch {
+	case q.demo && c.Args().Present():
+		return misused(fmt.Sprintf("compare takes a job file or --demo, not both: %s", c.Args().First()), "")
+	case !q.demo:
+		if q.job, err = oneArgument(c, "a job file, or --demo"); err != nil {
+			return err
+		}
+	}
+	if ext := filepath.Ext(q.workbook); !strings.EqualFold(ext, ".xlsx") {
+		return misused(fmt.Sprintf("--workbook %s: the name of a workbook ends in .xlsx", q.workbook), "")
+	}
+	if c.IsSet("json") && q.json == "" {
+		return misused("--json needs the name of a file, or -", "")
+	}
+	if c.IsSet("settings-from") && q.settings == "" {
+		return misused("--settings-from needs the name of a file", "")
+	}
+	if q.job == "-" && q.settings == "-" {
+		return misused("the job and --settings-from cannot both come from standard input", "")
+	}
+	if q.json != "" && filepath.Clean(q.json) == filepath.Clean(q.workbook) {
+		return misused(fmt.Sprintf("--json and --workbook name the same file: %s", q.json), "")
+	}
+	return nil
+}
+
+func (q *request) outputsFree() error {
+	if err := free(q.workbook, q.force, "name another file with --workbook, or write over it with --force"); err != nil {
+		return err
+	}
+	if q.json == "" || q.json == "-" {
+		return nil
+	}
+	return free(q.json, q.force, "name another file with --json, or write over it with --force")
+}
+
+func (p *program) readJob(path string, demo bool, cat *catalog.Catalog) (*job.Job, error) {
+	name, data := job.Demo()
+	if !demo {
+		var err error
+		if name, data, err = p.read(path); err != nil {
+			return nil, err
+		}
+	}
+	j, err := job.Read(name, data, cat)
+	return j, badFile(err)
+}
+
+func (p *program) readSettings(path string) (study.Options, error) {
+	if path == "" {
+		return study.Options{}, nil
+	}
+	name, data, err := p.read(path)
+	if err != nil {
+		return study.Options{}, err
+	}
+	settings, err := report.Settings(name, data)
+	return study.Options{Settings: settings}, badFile(err)
+}
+
+// deliver writes the files and prints the result. The result is printed even if
+// a file cannot be written: nothing that was computed is lost.
+func (p *program) deliver(ctx context.Context, q request, r *study.Report) error {
+	var book, doc bytes.Buffer
+	err := errors.Join(workbook.Write(&book, r), report.JSON(&doc, r))
+	opts := report.Options{}
+	if err == nil {
+		opts, err = q.writeFiles(ctx, book.Bytes(), doc.Bytes())
+	}
+	return failed(errors.Join(err, p.print(q, r, opts, doc.Bytes()), unreached(r)))
+}
+
+func (q *request) writeFiles(ctx context.Context, book, doc []byte) (opts report.Options, err error) {
+	if err := ctx.Err(); err != nil {
+		return opts, err
+	}
+	if err := write(q.workbook, book); err != nil {
+		return opts, err
+	}
+	opts.Workbook = q.workbook
+	if q.json != "" && q.json != "-" {
+		if err := write(q.json, doc); err != nil {
+			return opts, err
+		}
+		opts.JSON = q.json
+	}
+	return opts, nil
+}
+
+func (p *program) print(q request, r *study.Report, opts report.Options, doc []byte) error {
+	if q.json == "-" {
+		if !q.quiet {
+			for _, w := range r.Warnings {
+				fmt.Fprintln(p.stderr, w)
+			}
+		}
+		_, err := p.stdout.Write(doc)
+		return err
+	}
+	if q.quiet {
+		return nil
+	}
+	return report.Text(p.stdout, r, opts)
+}
+
+// unreached is an error where a lot has no route to its target.
+func unreached(r *study.Report) error {
+	var names []string
+	for i := range r.Lots {
+		l := &r.Lots[i]
+		if l.NothingToDo == "" && (len(l.Routes) == 0 || l.Routes[0].Rank == 0) {
+			names = append(names, l.Job.Name)
+		}
+	}
+	if len(names) == 0 {
+		return nil
+	}
+	return fmt.Errorf("no route reaches the target: %s", strings.Join(names, ", "))
+}

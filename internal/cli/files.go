@@ -1,0 +1,96 @@
+package cli
+
+import (
+	"errors"
+	"fmt"
+	"io"
+	"io/fs"
+	"os"
+	"path/filepath"
+
+	"github.com/natefinch/atomic"
+)
+
+// maxInputBytes is read of an input file at most; the reader of the file refuses
+// what is longer than its own limit.
+const maxInputBytes = 16<<20 + 1
+
+// read returns the content of a file, or of standard input for "-".
+func (p *program) read(path string) (name string, data []byte, err error) {
+	if path == "-" {
+		data, err = io.ReadAll(io.LimitReader(p.stdin, maxInputBytes))
+		return "standard input", data, failed(err)
+	}
+	f, err := os.Open(path)
+	if err != nil {
+		return path, nil, misused(fmt.Sprintf("cannot read %s: %s", path, cause(err)), "")
+	}
+	defer f.Close()
+	data, err = io.ReadAll(io.LimitReader(f, maxInputBytes))
+	if err != nil {
+		return path, nil, misused(fmt.Sprintf("cannot read %s: %s", path, cause(err)), "")
+	}
+	return path, data, nil
+}
+
+// free refuses a path that cannot be written to, before any work is done.
+func free(path string, force bool, hint string) error {
+	info, err := os.Stat(path)
+	switch {
+	case errors.Is(err, fs.ErrNotExist):
+		dir := filepath.Dir(path)
+		if parent, err := os.Stat(dir); err != nil || !parent.IsDir() {
+			return misused(fmt.Sprintf("cannot write %s: there is no folder %s", path, dir), "")
+		}
+		return nil
+	case err != nil:
+		return misused(fmt.Sprintf("cannot write %s: %s", path, cause(err)), "")
+	case !info.Mode().IsRegular():
+		return misused(fmt.Sprintf("cannot write %s: it is not a file", path), "")
+	case !force:
+		return misused(fmt.Sprintf("%s is there already and was kept", path), hint)
+	}
+	return nil
+}
+
+// write puts data into a file that appears whole or not at all.
+func write(path string, data []byte) error {
+	part := filepath.Join(filepath.Dir(path), fmt.Sprintf(".%s.%d.part", filepath.Base(path), os.Getpid()))
+	err := fill(part, data)
+	if err == nil {
+		err = atomic.ReplaceFile(part, path)
+	}
+	if err != nil {
+		return errors.Join(fmt.Errorf("cannot write %s: %s", path, cause(err)), removed(part))
+	}
+	return nil
+}
+
+func fill(path string, data []byte) error {
+	f, err := os.OpenFile(path, os.O_WRONLY|os.O_CREATE|os.O_EXCL, 0o644)
+	if err != nil {
+		return err
+	}
+	_, err = f.Write(data)
+	return errors.Join(err, f.Sync(), f.Close())
+}
+
+func removed(path string) error {
+	if err := os.Remove(path); err != nil && !errors.Is(err, fs.ErrNotExist) {
+		return err
+	}
+	return nil
+}
+
+// cause is what went wrong without the name of the file, which the message has.
+func cause(err error) string {
+	var path *fs.PathError
+	if errors.As(err, &path) {
+		return path.Err.Error()
+	}
+	var link *os.LinkError
+	if errors.As(err, &link) {
+		return link.Err.Error()
+	}
+	return err.Error()
+}

@@ -1,0 +1,106 @@
+package document
+
+import (
+	"fmt"
+	"strconv"
+	"strings"
+	"unicode/utf8"
+
+	"go.yaml.in/yaml/v3"
+)
+
+// Node is a value of the document. The methods of a nil Node do nothing and
+// return zero values, so that a missing key can be read like any other.
+type Node struct {
+	problems *Problems
+	parent   *Node
+	key      string // the key in the parent; "" in a list and at the root
+	index    int    // the place in the parent's list
+	raw      *yaml.Node
+	entries  []Entry // of a map, in the order of the file
+	items    []*Node // of a list
+	broken   bool    // a problem with this value is already recorded
+}
+
+// Entry is a key and its value.
+type Entry struct {
+	Key  string
+	Line int
+	Node *Node
+}
+
+// Problems returns the collector of the whole document.
+func (n *Node) Problems() *Problems { return n.problems }
+
+// Line is the line of the value, from 1.
+func (n *Node) Line() int {
+	if n == nil {
+		return 0
+	}
+	return n.raw.Line
+}
+
+// Path says where the value stands: "lots[0].water"; "" at the root.
+func (n *Node) Path() string {
+	if n == nil || n.parent == nil {
+		return ""
+	}
+	before := n.parent.Path()
+	switch {
+	case n.key == "":
+		return before + "[" + strconv.Itoa(n.index) + "]"
+	case before == "":
+		return segment(n.key)
+	}
+	return before + "." + segment(n.key)
+}
+
+// segment keeps a path short and printable.
+func segment(key string) string {
+	const most = 40
+	if utf8.RuneCountInString(key) > most {
+		key = string([]rune(key[:min(len(key), 4*most+4)])[:most-1]) + "…"
+	}
+	quoted := strconv.Quote(key)
+	return strings.ReplaceAll(quoted[1:len(quoted)-1], `\"`, `"`)
+}
+
+// Fail records a problem with this value.
+func (n *Node) Fail(format string, args ...any) {
+	if n == nil || n.broken {
+		return
+	}
+	n.failAt(n.raw.Line, format, args...)
+}
+
+func (n *Node) failAt(line int, format string, args ...any) {
+	text := fmt.Sprintf(format, args...)
+	if path := n.Path(); path != "" {
+		text = path + ": " + text
+	}
+	n.problems.Add(line, "%s", text)
+}
+
+// isNull reports an empty value, "~" and "null".
+func isNull(raw *yaml.Node) bool { return raw.Kind == yaml.ScalarNode && raw.Tag == "!!null" }
+
+// IsList reports whether the value is a list.
+func (n *Node) IsList() bool { return n != nil && n.raw.Kind == yaml.SequenceNode }
+
+// IsMap reports whether the value has keys.
+func (n *Node) IsMap() bool { return n != nil && n.raw.Kind == yaml.MappingNode }
+
+// IsEmpty reports whether there is no value: no key, or nothing after its colon.
+func (n *Node) IsEmpty() bool { return n == nil || isNull(n.raw) }
+
+func (n *Node) what() string {
+	switch {
+	case n.IsList():
+		return "a list"
+	case n.IsMap():
+		return "a set of keys"
+	case n.IsEmpty():
+		return "empty"
+	}
+	return "a single value"
+}

@@ -1,0 +1,204 @@
+package job
+
+import (
+	"maps"
+	"slices"
+	"strings"
+
+	"parch/catalog"
+	"parch/internal/document"
+	"parch/internal/quantity"
+)
+
+// ownCatalogs reads the names of own data files, which are not used yet.
+func (r *reader) ownCatalogs(n *document.Node) {
+	if n == nil {
+		return
+	}
+	if !n.IsList() {
+		r.fileName(n)
+		return
+	}
+	for _, item := range n.Items() {
+		r.fileName(item)
+	}
+}
+
+// fileName checks the name of a file that is not read yet.
+func (r *reader) fileName(n *document.Node) {
+	if r.label(n) != "" {
+		r.notYet(n)
+	}
+}
+
+func (r *reader) equipment(n *document.Node) {
+	known := slices.Sorted(maps.Keys(r.cat.Apparatus))
+	lines := map[string]int{}
+	for _, entry := range listOf(n) {
+		f := entry.Map("item", "owned")
+		item := r.known(f.Need("item"), known, "an apparatus of the catalog")
+		owned := f.Need("owned").Bool()
+		if item == "" || r.twice(entry, item, lines) {
+			continue
+		}
+		r.job.Equipment = append(r.job.Equipment, Equipment{Item: item, Owned: owned})
+	}
+}
+
+func (r *reader) stock(n *document.Node) {
+	known := slices.Concat(r.agentKeys(), slices.Sorted(maps.Keys(r.cat.Solvents)))
+	lines := map[string]int{}
+	for _, entry := range listOf(n) {
+		f := entry.Map("item", "on hand")
+		item := r.known(f.Need("item"), known, "an agent or a solvent of the catalog")
+		kg, ok := r.measure(f.Need("on hand"), quantity.Mass, between(0, 1e6, "0 kg to 1000000 kg"))
+		if item == "" || !ok || r.twice(entry, item, lines) {
+			continue
+		}
+		r.job.Stock = append(r.job.Stock, Stock{Item: item, OnHandKg: kg})
+	}
+	if n != nil {
+		r.notYet(n)
+	}
+}
+
+func (r *reader) accept(n *document.Node) {
+	f := n.Map("carriers", "agents", "unsuitable")
+	solvents := slices.Sorted(maps.Keys(r.cat.Solvents))
+	r.job.Accept = Accept{
+		Carriers:   r.words(f.Get("carriers"), slices.Concat(carriers, solvents), "a carrier"),
+		Agents:     r.words(f.Get("agents"), r.agentKeys(), "a drying agent"),
+		Unsuitable: r.words(f.Get("unsuitable"), r.agentKeys(), "a drying agent"),
+	}
+	if f.Has("carriers") {
+		r.notYet(f.Get("carriers"))
+	}
+}
+
+// carriers may be named although the catalog may not hold them as solvents yet.
+var carriers = []string{
+	"toluene", "cyclohexane", "n-heptane", "benzene", "mtbe", "diisopropyl-ether", "ethyl-acetate", "n-butyl-acetate",
+	"chloroform", "dichloromethane", "carbon-tetrachloride", "1-2-dichloroethane",
+}
+
+func (r *reader) exclude(n *document.Node) {
+	f := n.Map("steps", "agents")
+	r.job.Exclude = Exclude{
+		Steps:  r.words(f.Get("steps"), stepKinds, "a step"),
+		Agents: r.words(f.Get("agents"), r.agentKeys(), "a drying agent"),
+	}
+}
+
+// warnDangerous says that naming an agent does not allow a dangerous pair.
+func (r *reader) warnDangerous(n *document.Node) {
+	for _, agent := range slices.Concat(r.job.Accept.Agents, r.job.Accept.Unsuitable) {
+		for _, lot := range r.job.Lots {
+			v, ok := r.cat.Verdict(r.cat.Solvents[lot.Solvent], agent)
+			if ok && v.Word == "dangerous" {
+				r.note(n, "%s with %s is dangerous and stays excluded: %s", agent, lot.Solvent, v.Reason)
+			}
+		}
+	}
+}
+
+// listOf reads a list whose key may be left out.
+func listOf(n *document.Node) []*document.Node {
+	if n == nil {
+		return nil
+	}
+	return n.Items()
+}
+
+// words reads a list of known words, each once.
+func (r *reader) words(n *document.Node, known []string, what string) []string {
+	var words []string
+	lines := map[string]int{}
+	for _, item := range listOf(n) {
+		if word := r.known(item, known, what); word != "" && !r.twice(item, word, lines) {
+			words = append(words, word)
+		}
+	}
+	return words
+}
+
+// known reads one of the known words and offers the nearest otherwise.
+func (r *reader) known(n *document.Node, known []string, what string) string {
+	word := n.Text()
+	if word == "" || slices.Contains(known, word) {
+		return word
+	}
+	offer := n.Offer(word, known)
+	if offer == "" && len(known) <= 20 {
+		offer = "; allowed: " + strings.Join(known, ", ")
+	}
+	n.Fail("%s is not %s%s", quantity.Quote(word), what, offer)
+	return ""
+}
+
+func (r *reader) twice(n *document.Node, item string, lines map[string]int) bool {
+	if item == "" {
+		return false
+	}
+	if line, twice := lines[item]; twice {
+		n.Fail("%q is already given on line %d", item, line)
+		return true
+	}
+	lines[item] = n.Line()
+	return false
+}
+
+// agentKeys lists the agents of the catalog and those of its matrix, sorted.
+func (r *reader) agentKeys() []string {
+	keys := map[string]bool{}
+	for key := range r.cat.Agents {
+		keys[key] = true
+	}
+	for pair := range r.cat.Matrix {
+		keys[pair[1]] = true
+	}
+	return slices.Sorted(maps.Keys(keys))
+}
+
+// water is the key of water in the catalog.
+const water = "water"
+
+// solvent finds a solvent by key, name or alias; case does not count.
+func (r *reader) solvent(n *document.Node) *catalog.Solvent {
+	typed := n.Text()
+	if typed == "" {
+		return nil
+	}
+	var known []string
+	for _, key := range slices.Sorted(maps.Keys(r.cat.Solvents)) {
+		s := r.cat.Solvents[key]
+		for _, word := range append([]string{s.Key, s.Name}, s.Aliases...) {
+			switch {
+			case !strings.EqualFold(word, typed):
+			case key == water:
+				n.Fail("water is what is taken out; name the solvent it is in")
+				return nil
+			default:
+				return s
+			}
+			if key != water {
+				known = append(known, word)
+			}
+		}
+	}
+	offer := n.Offer(typed, known)
+	if offer == "" {
+		offer = "; solvents: " + strings.Join(r.solventKeys(), ", ")
+	}
+	n.Fail("%s is not a solvent of the catalog%s", quantity.Quote(typed), offer)
+	return nil
+}
+
+func (r *reader) solventKeys() []string {
+	var keys []string
+	for _, key := range slices.Sorted(maps.Keys(r.cat.Solvents)) {
+		if key != water {
+			keys = append(keys, key)
+		}
+	}
+	return keys
+}

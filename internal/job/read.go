@@ -1,0 +1,199 @@
+package job
+
+import (
+	"fmt"
+	"sort"
+	"strings"
+	"unicode"
+	"unicode/utf8"
+
+	"parch/catalog"
+	"parch/internal/document"
+	"parch/internal/quantity"
+)
+
+// Objectives are what a comparison may minimise.
+var Objectives = []string{"cost", "time", "waste", "energy"}
+
+// Currencies are those in which the catalog's indicative prices are taken at par.
+var Currencies = []string{"EUR", "USD", "GBP", "CHF"}
+
+// stepKinds are the steps that a job may exclude.
+var stepKinds = []string{"settle", "trap", "forerun", "salt", "soak", "column", "reactive", "buy"}
+
+// assumption is both the source and the confidence of a default that the program
+// chooses itself.
+const assumption = string(catalog.Assumption)
+
+// Read reads a job file. name is what messages call it. The error lists every
+// problem with its line; then there is no job.
+//
+// A top-level "invented: yes" marks every price of the job as invented, which
+// all output then repeats.
+func Read(name string, data []byte, cat *catalog.Catalog) (*Job, error) {
+	root, err := document.Parse(name, data)
+	if err != nil {
+		return nil, err
+	}
+	r := &reader{cat: cat, job: &Job{File: name}, problems: root.Problems()}
+	r.whole(root)
+	if err := r.problems.Err(); err != nil {
+		return nil, err
+	}
+	r.job.Warnings = r.sortedNotes()
+	return r.job, nil
+}
+
+// reader fills a job and remembers what it had to interpret.
+type reader struct {
+	cat      *catalog.Catalog
+	job      *Job
+	problems *document.Problems
+	notes    []note
+}
+
+type note struct {
+	line int
+	text string
+}
+
+func (r *reader) whole(root *document.Node) {
+	f := root.Map("title", "currency", "objective", "assurance", "catalog", "prices", "site", "equipment", "stock", "accept", "exclude", "lots", "invented")
+	j := r.job
+	j.Invented = f.Get("invented").Bool()
+	j.Title = r.orWord(f.Get("title"), "title", "Drying plan", r.label)
+	j.Currency = r.orWord(f.Get("currency"), "currency", "EUR", r.currency)
+	j.Objective = r.orWord(f.Get("objective"), "objective", "cost", func(n *document.Node) string { return n.OneOf(Objectives...) })
+	j.Assurance = 0.9
+	if n := f.Get("assurance"); n != nil {
+		j.Assurance, _ = r.measure(n, quantity.Share, between(0.5, 0.999, "50 % to 99.9 %"))
+		r.notYet(n)
+	} else {
+		r.assume("assurance", "90 %")
+	}
+	r.ownCatalogs(f.Get("catalog"))
+	r.site(f.Get("site"))
+	r.prices(f.Get("prices"))
+	r.equipment(f.Get("equipment"))
+	r.stock(f.Get("stock"))
+	r.accept(f.Get("accept"))
+	r.exclude(f.Get("exclude"))
+	r.lots(f.Need("lots"))
+	r.warnDangerous(f.Get("accept"))
+}
+
+// limits are the values that make sense, with the text that says so. The ends
+// are allowed, within rounding.
+type limits struct {
+	low, high float64
+	text      string
+}
+
+func between(low, high float64, text string) limits { return limits{low, high, text} }
+
+func (l limits) hold(x float64) bool {
+	const rounding = 1e-12
+	return x >= l.low-rounding*abs(l.low) && x <= l.high+rounding*abs(l.high)
+}
+
+func abs(x float64) float64 { return max(x, -x) }
+
+// measure reads a quantity within limits. ok is false where there is none.
+func (r *reader) measure(n *document.Node, d quantity.Dimension, l limits) (si float64, ok bool) {
+	reading, ok := n.Quantity(d)
+	if !ok {
+		return 0, false
+	}
+	if !l.hold(reading.SI) {
+		n.Fail("%s is not possible here; allowed: %s", quantity.Quote(n.Text()), l.text)
+		return 0, false
+	}
+	if reading.Note != "" {
+		r.note(n, "%s", reading.Note)
+	}
+	return reading.SI, true
+}
+
+// orPractice is measure with a default from the catalog's practice.
+func (r *reader) orPractice(n *document.Node, key, practice string, d quantity.Dimension, l limits) float64 {
+	if n != nil {
+		si, _ := r.measure(n, d, l)
+		return si
+	}
+	v, ok := r.cat.Practice[practice]
+	if !ok {
+		r.problems.Add(0, "%s is not given, and the catalog has no practice value %q", key, practice)
+		return 0
+	}
+	r.job.Defaults = append(r.job.Defaults, Default{
+		Key: key, Text: v.Text, Source: v.Source, Confidence: string(v.Confidence), Date: r.cat.Date,
+	})
+	return v.SI
+}
+
+// orWord reads a word, or takes the program's own default.
+func (r *reader) orWord(n *document.Node, key, otherwise string, read func(*document.Node) string) string {
+	if n != nil {
+		return read(n)
+	}
+	r.assume(key, otherwise)
+	return otherwise
+}
+
+// assume records a default that rests on nothing but the program's choice.
+func (r *reader) assume(key, text string) {
+	r.job.Defaults = append(r.job.Defaults, Default{Key: key, Text: text, Source: assumption, Confidence: assumption, Date: r.cat.Date})
+}
+
+// note records how a value was understood.
+func (r *reader) note(n *document.Node, format string, args ...any) {
+	text := fmt.Sprintf("%s:%d: %s: %s", r.job.File, n.Line(), n.Path(), fmt.Sprintf(format, args...))
+	r.notes = append(r.notes, note{n.Line(), text})
+}
+
+// notYet says that a key is understood and has no effect so far.
+func (r *reader) notYet(n *document.Node) { r.note(n, "not used yet") }
+
+func (r *reader) sortedNotes() []string {
+	sort.SliceStable(r.notes, func(i, j int) bool { return r.notes[i].line < r.notes[j].line })
+	var texts []string
+	for _, n := range r.notes {
+		texts = append(texts, n.text)
+	}
+	return texts
+}
+
+// currency reads the currency of the job.
+func (r *reader) currency(n *document.Node) string {
+	code := n.Text()
+	if code == "" {
+		return ""
+	}
+	for _, c := range Currencies {
+		if code == c {
+			return c
+		}
+	}
+	n.Fail("%s is not served yet: the built-in prices are taken at par only for %s", quantity.Quote(code), strings.Join(Currencies, ", "))
+	return ""
+}
+
+const longestLabel = 80
+
+// label reads a title or a name: it goes into headings and sheets as it is.
+func (r *reader) label(n *document.Node) string {
+	text := n.Text()
+	switch {
+	case text == "":
+		return ""
+	case utf8.RuneCountInString(text) > longestLabel:
+		n.Fail("%s has %d characters; at most %d", quantity.Quote(text), utf8.RuneCountInString(text), longestLabel)
+	case strings.ContainsFunc(text, func(c rune) bool { return !unicode.IsPrint(c) }):
+		n.Fail("%s contains a line break or a character that cannot be printed", quantity.Quote(text))
+	case strings.ContainsRune("=+-@", []rune(text)[0]):
+		n.Fail("%s begins with %q; in a sheet that would be taken for a formula. Begin with a letter or a digit", quantity.Quote(text), text[:1])
+	default:
+		return text
+	}
+	return ""
+}

@@ -1,0 +1,75 @@
+package job
+
+import (
+	"slices"
+
+	"parch/internal/document"
+	"parch/internal/quantity"
+)
+
+const zeroCelsius = 273.15
+
+// site reads the place and its rates. What is missing comes from the catalog's practice.
+func (r *reader) site(n *document.Node) {
+	f := n.Map("room", "pressure", "humidity", "receiver", "technician", "electricity", "cooling water",
+		"attended hours per day", "peroxide limit", "karl fischer")
+	r.job.Site = Site{
+		RoomK: r.orPractice(f.Get("room"), "site.room", "site-room", quantity.Temperature,
+			between(zeroCelsius+5, zeroCelsius+40, "5 °C to 40 °C")),
+		PressurePa: r.orPractice(f.Get("pressure"), "site.pressure", "site-pressure", quantity.Pressure,
+			between(1e3, 110e3, "10 hPa to 1100 hPa, absolute")),
+		Humidity: r.orPractice(f.Get("humidity"), "site.humidity", "site-humidity", quantity.Share,
+			between(0, 1, "0 % to 100 %")),
+		ReceiverK: r.orPractice(f.Get("receiver"), "site.receiver", "site-receiver", quantity.Temperature,
+			between(zeroCelsius+1, zeroCelsius+40, "1 °C to 40 °C; water would freeze in a colder one")),
+		AttendedSecondsPerDay: r.orPractice(f.Get("attended hours per day"), "site.attended hours per day", "site-attended-per-day", quantity.Time,
+			between(1800, 86400, "0.5 h to 24 h")),
+		PeroxideLimitKgPerM3: r.orPractice(f.Get("peroxide limit"), "site.peroxide limit", "site-peroxide-limit", quantity.MassConcentration,
+			between(0, 0.1, "0 mg/L to 100 mg/L")),
+	}
+	for _, key := range []string{"humidity", "attended hours per day"} {
+		if f.Has(key) {
+			r.notYet(f.Get(key))
+		}
+	}
+	r.job.Site.KarlFischer = r.orWord(f.Get("karl fischer"), "site.karl fischer", "coulometric",
+		func(n *document.Node) string { return n.OneOf("coulometric", "volumetric") })
+	r.rate(f.Get("technician"), "technician", "hour")
+	r.rate(f.Get("electricity"), "electricity", "kwh")
+	r.rate(f.Get("cooling water"), "cooling-water", "m3")
+}
+
+// rate reads a price per unit such as "48 EUR/h" and adds it to the job's prices.
+func (r *reader) rate(n *document.Node, item, unit string) {
+	money, ok := r.money(n)
+	if !ok {
+		return
+	}
+	if !slices.Contains(perUnit[unit], money.Per) {
+		n.Fail("%s is not a price per %s; write it like \"48 %s/%s\"", quantity.Quote(n.Text()), unit, money.Currency, perUnit[unit][0])
+		return
+	}
+	r.job.Prices = append(r.job.Prices, Price{Item: item, Unit: unit, PerUnit: money.Amount, Line: n.Line()})
+}
+
+// perUnit lists how a price per catalog unit may be written, the usual way first.
+var perUnit = map[string][]string{
+	"hour": {"h", "hour"}, "kwh": {"kWh", "kwh"}, "m3": {"m3", "m³"}, "kg": {"kg"}, "litre": {"L", "l", "litre"},
+	"each": {"each", "piece"}, "test": {"test"},
+}
+
+// money reads an amount in the currency of the job. Negative amounts are refused.
+func (r *reader) money(n *document.Node) (money quantity.Money, ok bool) {
+	money, ok = n.Money()
+	switch {
+	case !ok:
+		return money, false
+	case money.Amount.IsNegative():
+		n.Fail("%s is negative; a price is zero or more", quantity.Quote(n.Text()))
+		return money, false
+	case r.job.Currency != "" && money.Currency != r.job.Currency:
+		n.Fail("%s is in %s, but the currency of the job is %s; use one currency", quantity.Quote(n.Text()), money.Currency, r.job.Currency)
+		return money, false
+	}
+	return money, true
+}

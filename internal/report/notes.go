@@ -1,0 +1,117 @@
+package report
+
+import (
+	"slices"
+	"strings"
+
+	"parch/catalog"
+	"parch/internal/study"
+)
+
+// levels orders cautions, the gravest first.
+var levels = []string{"danger", "caution", "info"}
+
+// cautions prints each caution of a lot once, naming the routes where it does
+// not hold for all.
+func (p *page) cautions(l *study.Lot) {
+	var all []catalog.Caution
+	routes := map[string][]string{}
+	for i := range l.Routes {
+		for _, c := range l.Routes[i].Cautions {
+			if routes[c.Code] == nil {
+				all = append(all, c)
+			}
+			routes[c.Code] = append(routes[c.Code], l.Routes[i].ID)
+		}
+	}
+	if len(all) == 0 {
+		return
+	}
+	slices.SortStableFunc(all, func(a, b catalog.Caution) int {
+		return slices.Index(levels, a.Level) - slices.Index(levels, b.Level)
+	})
+	p.heading("Cautions:")
+	for _, c := range all {
+		p.say(5, 4, "%s, %s: %s%s%s", c.Level, c.Code, c.Text, cite(c.Source), only(routes[c.Code], len(l.Routes)))
+	}
+}
+
+// only names the routes that something holds for, unless it holds for all.
+func only(routes []string, all int) string {
+	if len(routes) == all {
+		return ""
+	}
+	return " (" + strings.Join(routes, ", ") + ")"
+}
+
+// warningsOf joins the warnings of a route and of its run, each once.
+func warningsOf(r *study.Route) []string {
+	var all []string
+	for _, w := range slices.Concat(r.Warnings, r.Run.Warnings) {
+		if !slices.Contains(all, w) {
+			all = append(all, w)
+		}
+	}
+	return all
+}
+
+// lotWarnings joins the warnings of a lot and of its routes, each once.
+func lotWarnings(l *study.Lot) []string {
+	var texts []string
+	routes := map[string][]string{}
+	for i := range l.Routes {
+		for _, w := range warningsOf(&l.Routes[i]) {
+			if routes[w] == nil {
+				texts = append(texts, w)
+			}
+			routes[w] = append(routes[w], l.Routes[i].ID)
+		}
+	}
+	all := slices.Clone(l.Warnings)
+	for _, w := range texts {
+		if !slices.Contains(l.Warnings, w) {
+			all = append(all, w+only(routes[w], len(l.Routes)))
+		}
+	}
+	return all
+}
+
+func (p *page) notes(heading string, notes []string) {
+	if len(notes) == 0 {
+		return
+	}
+	p.heading(heading + ":")
+	for _, n := range notes {
+		p.say(5, 4, "%s", n)
+	}
+}
+
+// weakShown is how many weak numbers of a kind the terminal shows; the workbook
+// lists them all.
+const weakShown = 12
+
+// weak names the numbers that rest on memory, practice or an assumption.
+func (p *page) weak(weak []study.Weak) {
+	if len(weak) == 0 {
+		return
+	}
+	p.line("")
+	p.say(0, 0, "Numbers that do not rest on a published source:")
+	var grades []string
+	by := map[string][]string{}
+	for _, w := range weak {
+		if by[w.Confidence] == nil {
+			grades = append(grades, w.Confidence)
+		}
+		by[w.Confidence] = append(by[w.Confidence], strings.TrimSpace(w.What+" "+w.Value))
+	}
+	for _, grade := range grades {
+		items := by[grade]
+		more := ""
+		if len(items) > weakShown {
+			more = "; and " + count(float64(len(items)-weakShown), "more", "more") + " on the sheet Sources of the workbook"
+			items = items[:weakShown]
+		}
+		p.say(2, 2, "%s: %s%s", grade, strings.Join(items, "; "), more)
+	}
+}

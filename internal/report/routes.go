@@ -1,0 +1,197 @@
+package report
+
+import (
+	"fmt"
+	"math"
+	"strconv"
+	"strings"
+
+	"github.com/shopspring/decimal"
+
+	"parch/internal/quantity"
+	"parch/internal/steps"
+	"parch/internal/study"
+)
+
+// ranked returns the routes that reach the limit, best first.
+func ranked(l *study.Lot) (reach []*study.Route) {
+	for i := range l.Routes {
+		if l.Routes[i].Rank > 0 {
+			reach = append(reach, &l.Routes[i])
+		}
+	}
+	return reach
+}
+
+// missed returns the routes that do not reach the limit, nearest first.
+func missed(l *study.Lot) (miss []*study.Route) {
+	for i := range l.Routes {
+		if l.Routes[i].Rank == 0 {
+			miss = append(miss, &l.Routes[i])
+		}
+	}
+	return miss
+}
+
+// verdict names the best route with the reason, or says how near any came.
+func (p *page) verdict(r *study.Report, l *study.Lot) {
+	p.line("")
+	reach, miss := ranked(l), missed(l)
+	switch {
+	case len(reach) > 0:
+		best := reach[0]
+		p.say(3, 0, "Best: %s (%s). %s", best.Label, best.ID, reason(r, reach))
+		p.say(3, 0, "It leaves %s after %s of attended work, %s in all.", quantity.FormatWater(best.Run.WaterOut),
+			hours(best.Run.HoursAttended), hours(best.Run.HoursTotal))
+	case len(miss) > 0:
+		p.say(3, 0, "No route reaches the target. The nearest, %s, leaves %s.", miss[0].ID, quantity.FormatWater(miss[0].Run.WaterOut))
+	default:
+		p.say(3, 0, "No route can be offered; the reasons stand below.")
+	}
+}
+
+// reason says why the first of the routes is the best by the job's objective.
+func reason(r *study.Report, reach []*study.Route) string {
+	best := reach[0]
+	aim, value := objective(r.Job.Objective, r.Job.Currency)
+	text := fmt.Sprintf("It has %s of %s: %s.", aim, count(float64(len(reach)), "route that reaches the limit", "routes that reach the limit"), value(best))
+	if len(reach) == 1 {
+		text = fmt.Sprintf("It is the only route that reaches the limit, at %s.", value(best))
+	}
+	if head, share := largestHead(best); share > 0 {
+		text += fmt.Sprintf(" %s is %s of its cost.", headNames[head], quantity.FormatShare(math.Round(100*share)/100))
+	}
+	if len(reach) > 1 {
+		text += fmt.Sprintf(" The next best is %s, at %s.", reach[1].ID, value(reach[1]))
+	}
+	return text
+}
+
+func objective(objective, currency string) (aim string, value func(*study.Route) string) {
+	switch objective {
+	case "time":
+		return "the shortest time", func(r *study.Route) string { return hours(r.Run.HoursTotal) }
+	case "waste":
+		return "the least waste", func(r *study.Route) string { return quantity.FormatMass(r.Run.WasteKg) + " a batch" }
+	case "energy":
+		return "the least energy", func(r *study.Route) string {
+			return quantity.Significant(r.Run.EnergyKWh, 3) + " kWh a batch"
+		}
+	}
+	return "the lowest cost", func(r *study.Route) string {
+		return fmt.Sprintf("%s %s a litre delivered", money(r.Bill.PerLitre), currency)
+	}
+}
+
+var headNames = map[steps.Head]string{
+	steps.Labour:       "Labour",
+	steps.Energy:       "Energy",
+	steps.CoolingWater: "Cooling water",
+	steps.Agent:        "Drying agent",
+	steps.SolventLost:  "Lost solvent",
+	steps.Waste:        "Waste",
+	steps.Equipment:    "Equipment",
+	steps.Testing:      "Testing",
+	steps.Purchase:     "Purchase",
+}
+
+func largestHead(r *study.Route) (largest steps.Head, share float64) {
+	most := decimal.Zero
+	for _, head := range steps.Heads {
+		if amount := r.Bill.ByHead[head]; amount.GreaterThan(most) {
+			largest, most = head, amount
+		}
+	}
+	if !r.Bill.PerBatch.IsPositive() {
+		return largest, 0
+	}
+	return largest, most.Div(r.Bill.PerBatch).InexactFloat64()
+}
+
+// money is shown to the cent.
+func money(d decimal.Decimal) string { return d.StringFixed(2) }
+
+func hours(h float64) string { return quantity.Significant(h, 3) + " h" }
+
+func mgKg(water float64) string {
+	return quantity.Significant(water*mgPerKg, 3)
+}
+
+// routeColumns keeps the tables within the width of the page.
+const routeColumns = 26
+
+func (p *page) ranking(r *study.Report, l *study.Lot) {
+	reach := ranked(l)
+	if len(reach) == 0 {
+		return
+	}
+	columns := []column{
+		{"Rank", true, 0}, {"Route", false, 0}, {"Water out\nmg/kg", true, 0}, {"Attended\nh", true, 0}, {"In all\nh", true, 0},
+		{"Energy\nkWh", true, 0}, {"Lost\nL", true, 0}, {"A batch\n" + r.Job.Currency, true, 0}, {"A litre\n" + r.Job.Currency, true, 0},
+	}
+	rows := make([][]string, len(reach))
+	for i, route := range reach {
+		run := &route.Run
+		rows[i] = []string{
+			strconv.Itoa(route.Rank), brokenAtPlus(route.ID, routeColumns), mgKg(run.WaterOut), quantity.Significant(run.HoursAttended, 3),
+			quantity.Significant(run.HoursTotal, 3), quantity.Significant(run.EnergyKWh, 3), quantity.Significant(run.SolventLostL, 2),
+			money(route.Bill.PerBatch), money(route.Bill.PerLitre),
+		}
+	}
+	p.line("")
+	p.table(columns, rows)
+}
+
+// missing lists how far each route got that does not reach the limit.
+func (p *page) missing(l *study.Lot) {
+	miss := missed(l)
+	if len(miss) == 0 {
+		return
+	}
+	rows := make([][]string, len(miss))
+	for i, route := range miss {
+		rows[i] = []string{brokenAtPlus(route.ID, routeColumns), mgKg(route.Run.WaterOut), stops(route)}
+	}
+	p.heading("Routes that do not reach it, and how far each got:")
+	p.table([]column{{"Route", false, 0}, {"Water out\nmg/kg", true, 0}, {"Why it stops there", false, 52}}, rows)
+}
+
+func stops(r *study.Route) string {
+	if len(r.Run.Outcomes) == 0 {
+		return ""
+	}
+	last := r.Run.Outcomes[len(r.Run.Outcomes)-1]
+	if last.WhyText != "" {
+		return last.WhyText
+	}
+	return string(last.Why)
+}
+
+// excluded lists what is not offered; routes with the same reason share a line.
+func (p *page) excluded(l *study.Lot) {
+	if len(l.Excluded) == 0 {
+		return
+	}
+	type cause struct{ reason, source string }
+	var causes []cause
+	ids := map[cause][]string{}
+	for _, x := range l.Excluded {
+		c := cause{x.Reason, x.Source}
+		if ids[c] == nil {
+			causes = append(causes, c)
+		}
+		ids[c] = append(ids[c], x.ID)
+	}
+	p.heading("Not offered:")
+	for _, c := range causes {
+		p.say(5, 4, "%s: %s%s", strings.Join(ids[c], ", "), c.reason, cite(c.source))
+	}
+}
+
+// cite points to an entry of the list of sources.
+func cite(source string) string {
+	if source == "" {
+		return ""
+	}
+	return " [" + source + "]"
+}

@@ -1,0 +1,170 @@
+package routes
+
+import (
+	"fmt"
+	"math"
+
+	"parch/catalog"
+	"parch/internal/steps"
+)
+
+const secondsPerYear = 365.25 * 86400
+
+// account turns what a step did into what is paid for.
+func (c *Case) account(place int, o steps.Outcome, s Settings, soaks int) []StageUse {
+	var uses []StageUse
+	use := func(head steps.Head, item, unit string, quantity float64, basis string) {
+		if quantity > 0 {
+			uses = append(uses, StageUse{place, steps.Use{Head: head, Item: item, Unit: unit, Quantity: quantity, Basis: basis}})
+		}
+	}
+	use(steps.Labour, "technician", "hour", o.HoursAttended, fmt.Sprintf("attended hours of the %s", o.Kind))
+	use(steps.Energy, "electricity", "kwh", o.EnergyKWh, "heater power x hours at the heater")
+	use(steps.CoolingWater, "cooling-water", "m3", o.CoolingWaterL/1e3, "tap flow x hours of reflux")
+	density := c.Mixture.Solvent.DensityKgPerM3.At(c.Job.Site.RoomK)
+	for _, l := range o.Losses {
+		use(steps.SolventLost, c.Solvent.Key, "litre", l.SolventKg/density*1e3, l.Cause)
+	}
+	for _, d := range o.Discards {
+		use(steps.Waste, c.wasteItem(d.Class), "kg", d.Kg, d.What)
+	}
+	switch o.Kind {
+	case steps.Trap:
+		still, _ := c.Still()
+		receiver, _ := c.receiver()
+		uses = append(uses, c.wear(place, still, 1)...)
+		uses = append(uses, c.wear(place, receiver, 1)...)
+	case steps.Soak:
+		uses = append(uses, c.sieveUses(place, o, s.Sieve[soaks])...)
+		vessel, count := c.vessel()
+		uses = append(uses, c.wear(place, vessel, count)...)
+	case steps.Buy:
+		use(steps.Purchase, c.Solvent.Key+"-dry", "litre", c.Lot.BatchM3*1e3, "the batch bought dry")
+		if c.Lot.Reclaimed {
+			use(steps.Waste, c.wasteItem(steps.SolventWaste), "kg", o.In.MassKg(), "the reclaimed lot that is not dried")
+		}
+	}
+	return uses
+}
+
+// sieveUses is the sieve's share per use: its price over its lives, the oven
+// run shared by the oven's load, the solvent-wet beads when they are discarded.
+func (c *Case) sieveUses(place int, o steps.Outcome, after string) []StageUse {
+	agent := c.Catalog.Agents[o.Agent]
+	lives := 1.0
+	if after == Regenerate {
+		lives = agent.Lives.SI
+	}
+	uses := []StageUse{{place, steps.Use{
+		Head: steps.Agent, Item: o.Agent, Unit: "kg", Quantity: o.AgentKg / lives,
+		Basis: fmt.Sprintf("%.4g kg charged, used %.0f times", o.AgentKg, lives),
+	}}}
+	heldKg := 0.0
+	for _, l := range o.Losses {
+		heldKg += l.SolventKg
+	}
+	uses = append(uses, StageUse{place, steps.Use{
+		Head: steps.Waste, Item: c.wasteItem(steps.WetSolidWaste), Unit: "kg", Quantity: (o.AgentKg + heldKg) / lives,
+		Basis: "solvent-wet beads, discarded after their last use",
+	}})
+	if oven, runs := c.ovenRuns(o.AgentKg, after); runs > 0 {
+		uses = append(uses,
+			StageUse{place, steps.Use{
+				Head: steps.Energy, Item: "electricity", Unit: "kwh", Quantity: runs * oven.Energy.SI / 3.6e6,
+				Basis: fmt.Sprintf("activation: a run takes %.3g kg and %.3g kWh", oven.Load.SI, oven.Energy.SI/3.6e6),
+			}},
+			StageUse{place, steps.Use{
+				Head: steps.Labour, Item: "technician", Unit: "hour", Quantity: runs * c.practice("oven-attended") / 3600,
+				Basis: "loading the oven, bottling hot sieve, shared by its load",
+			}})
+		uses = append(uses, c.wear(place, oven, 1)...)
+	}
+	return uses
+}
+
+// ovenRuns is the share of oven runs that a charge of sieve needs. A sieve used
+// straight from an opened tin needs none.
+func (c *Case) ovenRuns(chargeKg float64, after string) (*catalog.Apparatus, float64) {
+	if after == Discard && c.Lot.SieveHistoryK == 0 {
+		return nil, 0
+	}
+	ovens := c.pieces("oven")
+	if len(ovens) == 0 || chargeKg == 0 {
+		return nil, 0
+	}
+	return ovens[0], chargeKg / ovens[0].Load.SI
+}
+
+// wear is a year's share of a piece of apparatus: breakage, and its price over
+// its life unless it is owned already.
+func (c *Case) wear(place int, a *catalog.Apparatus, count int) []StageUse {
+	share, basis := 0.0, "owned; "
+	if a.Breakage != nil {
+		share = a.Breakage.SI
+	}
+	if !c.owned(a.Key) && a.Life != nil {
+		share += secondsPerYear / a.Life.SI
+		basis = fmt.Sprintf("bought, over %.3g years; ", a.Life.SI/secondsPerYear)
+	}
+	if share == 0 {
+		return nil
+	}
+	return []StageUse{{place, steps.Use{
+		Head: steps.Equipment, Item: a.Key, Unit: "each", Quantity: share * float64(count), PerYear: true,
+		Basis: basis + "a year's share over the batches of the lot",
+	}}}
+}
+
+func (c *Case) wasteItem(class steps.WasteClass) string {
+	switch class {
+	case steps.AqueousWaste:
+		return "waste-aqueous"
+	case steps.WetSolidWaste:
+		return "waste-wet-solid"
+	}
+	if c.Solvent.Hazards.Halogenated {
+		return "waste-halogenated-liquid"
+	}
+	return "waste-flammable-liquid"
+}
+
+// wholeRoute is what is paid once a batch: showing the result, and the feed.
+func (c *Case) wholeRoute(run *Run) []StageUse {
+	injections := float64(c.Assay.Injections)
+	hours := c.practice("karl-fischer-time") / 3600
+	uses := []StageUse{
+		{0, steps.Use{Head: steps.Testing, Item: "karl-fischer", Unit: "test", Quantity: injections, Basis: fmt.Sprintf("%.0f injections of the product", injections)}},
+		{0, steps.Use{Head: steps.Testing, Item: "technician", Unit: "hour", Quantity: hours, Basis: "sampling, test and log"}},
+	}
+	if run.Route[0].Kind != steps.Buy && !c.Lot.Reclaimed {
+		uses = append(uses, StageUse{0, steps.Use{
+			Head: steps.Purchase, Item: c.Solvent.Key, Unit: "litre", Quantity: run.LitresDelivered,
+			Basis: "regular grade that was dried, litres delivered; what was lost is under solvent lost",
+		}})
+	}
+	return uses
+}
+
+// emissions of the run in kg CO2e: energy, solvent lost (making and burning),
+// agent. NaN where a factor is missing.
+func (c *Case) emissions(run *Run) float64 {
+	factor := func(key string) float64 {
+		if v, ok := c.Catalog.Emissions[key]; ok {
+			return v.SI
+		}
+		return math.NaN()
+	}
+	total := 0.0
+	density := c.Mixture.Solvent.DensityKgPerM3.At(c.Job.Site.RoomK)
+	for _, u := range run.Uses {
+		switch {
+		case u.Item == "electricity":
+			total += u.Quantity * factor("electricity")
+		case u.Head == steps.SolventLost:
+			total += u.Quantity / 1e3 * density * (factor("making/"+c.Solvent.Key) + factor("burning/"+c.Solvent.Key))
+		case u.Head == steps.Agent:
+			total += u.Quantity * factor("making/"+u.Item)
+		}
+	}
+	return total
+}

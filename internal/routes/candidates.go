@@ -1,0 +1,203 @@
+package routes
+
+import (
+	"fmt"
+	"slices"
+	"sort"
+	"strings"
+
+	"parch/catalog"
+	"parch/internal/steps"
+)
+
+// Candidates lists the chains worth running on the lot and those that are not
+// offered, each with its reason. The order is fixed.
+func (c *Case) Candidates() ([]Route, []Excluded) {
+	var offered []Route
+	excluded := c.refusedAgents()
+	for _, r := range c.chains() {
+		if reason, source := c.refuse(r); reason != "" {
+			excluded = append(excluded, Excluded{r.ID(), reason, source})
+			continue
+		}
+		offered = append(offered, r)
+	}
+	return offered, excluded
+}
+
+// chains are the orders in which the steps make sense: free water first, bulk
+// water by boiling, the rest over a sorbent; or a dry grade bought instead.
+func (c *Case) chains() []Route {
+	heads := []Route{nil, {{Kind: steps.Settle}}, {{Kind: steps.Trap}}, {{Kind: steps.Settle}, {Kind: steps.Trap}}}
+	var all []Route
+	for _, head := range heads {
+		if head != nil {
+			all = append(all, head)
+		}
+		for _, agent := range c.sorbents() {
+			all = append(all, append(slices.Clone(head), Stage{Kind: steps.Soak, Agent: agent}))
+		}
+	}
+	return append(all, Route{{Kind: steps.Buy}})
+}
+
+// sorbents are the agents of the catalog that a soak can be computed for.
+func (c *Case) sorbents() []string {
+	var keys []string
+	for key, a := range c.Catalog.Agents {
+		if a.Isotherm != nil {
+			keys = append(keys, key)
+		}
+	}
+	sort.Strings(keys)
+	return keys
+}
+
+// refuse returns the reason why a route is not offered, or "".
+func (c *Case) refuse(r Route) (reason, source string) {
+	for _, s := range r {
+		if slices.Contains(c.Job.Exclude.Steps, string(s.Kind)) {
+			return fmt.Sprintf("the job excludes the step %q", s.Kind), "job"
+		}
+		switch s.Kind {
+		case steps.Trap:
+			reason, source = c.refuseTrap()
+		case steps.Settle:
+			reason, source = c.refuseSettle()
+		case steps.Soak:
+			reason, source = c.refuseAgent(s.Agent)
+		case steps.Buy:
+			reason, source = c.refuseBuy()
+		}
+		if reason != "" {
+			return reason, source
+		}
+	}
+	return "", ""
+}
+
+func (c *Case) refuseTrap() (reason, source string) {
+	if reason, source = c.refuseHeating(); reason != "" {
+		return reason, source
+	}
+	if c.Trap == nil {
+		return c.NoTrap.Error(), c.Solvent.Water.Source
+	}
+	if _, err := c.receiver(); err != nil {
+		return err.Error(), "equipment"
+	}
+	return "", ""
+}
+
+// refuseHeating holds back every heated route of a peroxide former that has no
+// reading under the site's limit.
+func (c *Case) refuseHeating() (reason, source string) {
+	h := c.Solvent.Hazards
+	if h.PeroxideClass == "none" || h.PeroxideClass == "" {
+		return "", ""
+	}
+	limit := c.Job.Site.PeroxideLimitKgPerM3
+	switch p := c.Lot.Peroxide; {
+	case p == nil:
+		return fmt.Sprintf("test first: %s forms peroxides (class %s) and the job gives no peroxide reading", c.Solvent.Name, h.PeroxideClass), h.Source
+	case p.ReadingKgPerM3 > limit:
+		return fmt.Sprintf("not heated: the peroxide reading of %.3g mg/L (%s) is over the site's limit of %.3g mg/L", p.ReadingKgPerM3*1e3, p.Date, limit*1e3), h.Source
+	}
+	return "", ""
+}
+
+func (c *Case) refuseSettle() (reason, source string) {
+	saturated, ok, err := c.Mixture.Solubility(c.Job.Site.RoomK)
+	switch {
+	case err != nil:
+		return err.Error(), c.Solvent.Water.Source
+	case !ok:
+		return fmt.Sprintf("nothing settles: water and %s form no second layer at %.0f °C", c.Solvent.Name, c.Job.Site.RoomK-273.15), c.Solvent.Water.Source
+	case c.Feed.Water() <= saturated:
+		return fmt.Sprintf("nothing settles: %s holds %.4g mg/kg at %.0f °C, the lot has %.4g", c.Solvent.Name, saturated*1e6, c.Job.Site.RoomK-273.15, c.Feed.Water()*1e6), c.Solvent.Water.Source
+	}
+	return "", ""
+}
+
+// refuseAgent asks the matrix. A missing pair is a refusal. Unsuitable pairs
+// pass only if the job accepts them by name, dangerous ones never.
+func (c *Case) refuseAgent(agent string) (reason, source string) {
+	if slices.Contains(c.Job.Exclude.Agents, agent) {
+		return fmt.Sprintf("the job excludes %s", agent), "job"
+	}
+	v, ok := c.Catalog.Verdict(c.Solvent, agent)
+	if !ok {
+		return fmt.Sprintf("no data on %s with %s", agent, c.Solvent.Name), ""
+	}
+	if v.Word == "unsuitable" && c.accepted(agent) {
+		return "", ""
+	}
+	if !v.Allowed() {
+		return fmt.Sprintf("%s: %s", v.Word, v.Reason), v.Source
+	}
+	return "", ""
+}
+
+func (c *Case) accepted(agent string) bool {
+	return slices.Contains(c.Job.Accept.Unsuitable, agent) || slices.Contains(c.Job.Accept.Agents, agent)
+}
+
+func (c *Case) refuseBuy() (reason, source string) {
+	if _, ok := c.Catalog.Prices[c.Solvent.Key+"-dry"]; ok {
+		return "", ""
+	}
+	for _, p := range c.Job.Prices {
+		if p.Item == c.Solvent.Key+"-dry" {
+			return "", ""
+		}
+	}
+	return fmt.Sprintf("no price for dry %s", c.Solvent.Name), ""
+}
+
+// refusedAgents lists the agents that no route may use with this solvent.
+func (c *Case) refusedAgents() []Excluded {
+	var out []Excluded
+	keys := make([]string, 0, len(c.Catalog.Agents))
+	for key, a := range c.Catalog.Agents {
+		if a.Isotherm == nil { // those with one are refused as routes of their own
+			keys = append(keys, key)
+		}
+	}
+	sort.Strings(keys)
+	for _, key := range keys {
+		if v, ok := c.Catalog.Verdict(c.Solvent, key); !ok || !v.Allowed() {
+			reason, source := c.refuseAgent(key)
+			out = append(out, Excluded{stepFor(c.Catalog.Agents[key]) + ":" + key, reason, source})
+		}
+	}
+	return out
+}
+
+// stepFor is the step that would use an agent.
+func stepFor(a *catalog.Agent) string {
+	switch a.Kind {
+	case "salt":
+		return "salt"
+	case "reactive":
+		return "reactive"
+	}
+	return string(steps.Soak)
+}
+
+// Label is a route in words.
+func (c *Case) Label(r Route) string {
+	parts := make([]string, len(r))
+	for i, s := range r {
+		switch s.Kind {
+		case steps.Settle:
+			parts[i] = "settle"
+		case steps.Trap:
+			parts[i] = "boil out under a trap"
+		case steps.Soak:
+			parts[i] = "stand over " + c.Catalog.Agents[s.Agent].Name
+		case steps.Buy:
+			parts[i] = "buy dry"
+		}
+	}
+	return strings.Join(parts, ", ")
+}

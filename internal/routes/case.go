@@ -1,0 +1,74 @@
+package routes
+
+import (
+	"fmt"
+	"math"
+
+	"parch/catalog"
+	"parch/internal/assay"
+	"parch/internal/job"
+	"parch/internal/steps"
+	"parch/internal/thermo"
+)
+
+// Case is one lot at one site: everything a route needs to run.
+type Case struct {
+	Job     *job.Job
+	Lot     job.Lot
+	Catalog *catalog.Catalog
+	Solvent *catalog.Solvent
+	Mixture *thermo.Mixture
+	Feed    steps.Lot // dissolved and free water together, at room temperature
+	Limit   assay.Limit
+	Assay   assay.Method
+	Trap    *steps.TrapEquilibrium // nil where no trap works
+	NoTrap  error                  // why
+
+	traps map[trapKey]steps.Outcome
+}
+
+// NewCase prepares a lot.
+func NewCase(j *job.Job, lot job.Lot, c *catalog.Catalog) (*Case, error) {
+	solvent, ok := c.Solvents[lot.Solvent]
+	if !ok || solvent.Water == nil {
+		return nil, fmt.Errorf("%s: no data on water in %s", lot.Name, lot.Solvent)
+	}
+	m := &thermo.Mixture{Water: &c.Solvents["water"].Pure, Solvent: &solvent.Pure, NRTL: solvent.Water.NRTL}
+	k := c.Assays[j.Site.KarlFischer]
+	method := assay.Method{Name: k.Key, Repeatability: k.Repeatability.SI, DetectionLimit: k.DetectionLimit.SI, Injections: k.Injections}
+	trap, noTrap := steps.NewTrapEquilibrium(m, j.Site.ReceiverK, j.Site.PressurePa)
+	return &Case{
+		Job: j, Lot: lot, Catalog: c, Solvent: solvent, Mixture: m,
+		Feed:  feed(m, lot, j.Site.RoomK),
+		Limit: assay.Accept(lot.Target, method), Assay: method, Trap: trap, NoTrap: noTrap,
+		traps: map[trapKey]steps.Outcome{},
+	}, nil
+}
+
+// feed is the lot as delivered. The batch volume is the solvent with its
+// dissolved water; free water stands beside it.
+func feed(m *thermo.Mixture, lot job.Lot, roomK float64) steps.Lot {
+	w := lot.Water
+	volumePerKg := w/m.Water.DensityKgPerM3.At(roomK) + (1-w)/m.Solvent.DensityKgPerM3.At(roomK)
+	mass := lot.BatchM3 / volumePerKg
+	free := lot.FreeWaterM3 * m.Water.DensityKgPerM3.At(roomK)
+	return steps.Lot{SolventKg: mass * (1 - w), WaterKg: mass*w + free, TempK: roomK}
+}
+
+// practice returns an operating fact in SI units. The catalog's own test sees
+// to it that every key asked for here exists.
+func (c *Case) practice(key string) float64 { return c.Catalog.Practice[key].SI }
+
+// Dry reports whether the lot passes as it stands.
+func (c *Case) Dry() bool {
+	return c.Lot.FreeWaterM3 == 0 && c.Feed.Water() <= c.Limit.AcceptAt
+}
+
+// goal is what the last step of a route must reach: the acceptance limit, or
+// the target itself where the limit cannot be shown.
+func (c *Case) goal() float64 {
+	if math.IsNaN(c.Limit.AcceptAt) {
+		return c.Lot.Target
+	}
+	return c.Limit.AcceptAt
+}

@@ -1,0 +1,209 @@
+package routes
+
+import (
+	"errors"
+	"fmt"
+	"math"
+
+	"parch/internal/steps"
+)
+
+// Ways to treat a sieve after use.
+const (
+	Regenerate = "regenerate"
+	Discard    = "discard"
+)
+
+// Run carries out the route with the given settings. It is an error if the
+// physics refuses a step; a route that misses its target is not.
+func (c *Case) Run(r Route, s Settings) (Run, error) {
+	run := Run{Route: r, Settings: s, AgentKg: map[string]float64{}}
+	lot := c.Feed
+	soaks := 0
+	handOver := make([]float64, 0, len(r))
+	for i, stage := range r {
+		goal := c.goal()
+		if i < len(r)-1 {
+			goal = s.HandOverMgPerKg[i] * 1e-6
+		}
+		var o steps.Outcome
+		var err error
+		switch stage.Kind {
+		case steps.Settle:
+			o, err = steps.RunSettle(c.Mixture, lot, c.Job.Site.RoomK, c.settleRules())
+		case steps.Trap:
+			o, err = c.runTrap(lot, goal)
+		case steps.Soak:
+			o, err = c.runSoak(lot, goal, stage.Agent, s.SoakHours[soaks], s.Sieve[soaks])
+		case steps.Buy:
+			o = steps.RunBuy(c.Mixture, lot, c.dryGrade(), c.practice("buy-attended"), c.Job.Site.RoomK)
+		}
+		if err != nil {
+			return Run{}, fmt.Errorf("%s: %w", stage.Kind, refused(err))
+		}
+		uses := c.account(i+1, o, s, soaks)
+		o.HoursAttended, o.EnergyKWh = sum(uses, "technician"), sum(uses, "electricity")
+		run.add(uses...)
+		run.Outcomes = append(run.Outcomes, o)
+		if stage.Kind == steps.Soak {
+			run.AgentKg[stage.Agent] += o.AgentKg
+			soaks++
+		}
+		if i < len(r)-1 {
+			handOver = append(handOver, o.Out.Water()*1e6)
+		}
+		lot = o.Out
+	}
+	run.Settings.HandOverMgPerKg = c.keptHandOver(r, s, handOver)
+	c.finish(&run, lot)
+	return run, nil
+}
+
+// refused marks the errors that say that a step does not work on this lot.
+func refused(err error) error {
+	for _, known := range []error{steps.ErrNoTrap, steps.ErrNothingSettles, steps.ErrWetSieve} {
+		if errors.Is(err, known) {
+			return fmt.Errorf("%w: %w", ErrRefused, err)
+		}
+	}
+	return err
+}
+
+// keptHandOver reports the chosen hand-over of a step that has a choice and the
+// reached one of a step that has none.
+func (c *Case) keptHandOver(r Route, s Settings, reached []float64) []float64 {
+	for i := range reached {
+		if r[i].Kind == steps.Trap {
+			reached[i] = s.HandOverMgPerKg[i]
+		}
+	}
+	return reached
+}
+
+// finish adds what belongs to the whole route and sums up.
+func (c *Case) finish(run *Run, product steps.Lot) {
+	run.WaterOut = product.Water()
+	run.Meets = run.WaterOut <= c.Limit.AcceptAt*(1+1e-9)
+	run.LitresDelivered = steps.LotVolume(c.Mixture, product, c.Job.Site.RoomK) * 1e3
+	run.add(c.wholeRoute(run)...)
+	for _, o := range run.Outcomes {
+		run.HoursTotal += o.HoursTotal
+		run.CoolingWaterL += o.CoolingWaterL
+		run.SolventLostL += o.SolventLostL
+	}
+	run.HoursTotal += c.practice("karl-fischer-time") / 3600
+	run.HoursAttended, run.EnergyKWh = sum(run.Uses, "technician"), sum(run.Uses, "electricity")
+	for _, u := range run.Uses {
+		if u.Head == steps.Waste {
+			run.WasteKg += u.Quantity
+		}
+	}
+	run.CO2eKg = c.emissions(run)
+}
+
+// sum of the quantities of one item.
+func sum(uses []StageUse, item string) float64 {
+	total := 0.0
+	for _, u := range uses {
+		if u.Item == item {
+			total += u.Quantity
+		}
+	}
+	return total
+}
+
+func (r *Run) add(uses ...StageUse) { r.Uses = append(r.Uses, uses...) }
+
+func (c *Case) settleRules() steps.SettleRules {
+	return steps.SettleRules{
+		TimeS: c.practice("settle-time"), AttendedS: c.practice("settle-attended"),
+		InterfaceShare: c.practice("settle-interface"),
+	}
+}
+
+func (c *Case) trapRules() steps.TrapRules {
+	return steps.TrapRules{
+		LowestOutlet: c.practice("trap-outlet-minimum"), Efficiency: c.practice("trap-efficiency"),
+		EfficiencyBelow: c.practice("trap-efficiency-below"), ShortestRefluxS: c.practice("trap-reflux-minimum"),
+		SetUpS: c.practice("trap-setup"), AttendedShare: c.practice("trap-attended-share"),
+		ShutDownS: c.practice("trap-shutdown"), DrainingS: c.practice("draining-time"),
+		VapourLossPerDay: c.practice("vapour-loss-per-day"),
+		CoolingFlowM3S:   c.practice("cooling-flow"), CoolingRiseK: c.practice("cooling-rise"),
+	}
+}
+
+// trapKey tells trap runs of one case apart: what goes in and what is asked.
+type trapKey struct{ waterKg, solventKg, goal float64 }
+
+// runTrap remembers its outcomes: a search asks for the same trap before many
+// different soaks.
+func (c *Case) runTrap(lot steps.Lot, goal float64) (steps.Outcome, error) {
+	key := trapKey{lot.WaterKg, lot.SolventKg, goal}
+	if o, ok := c.traps[key]; ok {
+		return o, nil
+	}
+	o, err := c.boilOut(lot, goal)
+	if err == nil {
+		c.traps[key] = o
+	}
+	return o, err
+}
+
+func (c *Case) boilOut(lot steps.Lot, goal float64) (steps.Outcome, error) {
+	if c.Trap == nil {
+		return steps.Outcome{}, c.NoTrap
+	}
+	receiver, err := c.receiver()
+	if err != nil {
+		return steps.Outcome{}, err
+	}
+	still, charges := c.Still()
+	rules := c.trapRules()
+	if receiver.SetUp != nil {
+		rules.SetUpS += receiver.SetUp.SI
+	}
+	return steps.RunTrap(c.Trap, lot, goal, steps.TrapRig{
+		HeaterW: c.heaterW(still), HeatShare: c.practice("heat-share"), Returns: receiver.Returns,
+		FillVolumeM3: receiver.FillVolume.SI, UsableVolumeM3: receiver.Volume.SI,
+		RoomK: c.Job.Site.RoomK, Charges: charges,
+	}, rules)
+}
+
+func (c *Case) runSoak(lot steps.Lot, goal float64, agent string, hours float64, after string) (steps.Outcome, error) {
+	_, vessels := c.vessel()
+	rig := steps.SoakRig{
+		TempK: c.Job.Site.RoomK, DepthM: c.depth(vessels), Vessels: vessels,
+		StillRatePerS: c.Solvent.StillRate.SI, RateDepthM: c.practice("still-rate-depth"),
+		AttendedS: c.practice("soak-attended"), WaterMolarM3: c.practice("water-molar-volume"),
+	}
+	return steps.SoakFor(c.Mixture, lot, goal, hours*3600, c.sorbent(agent, after), rig)
+}
+
+// sorbent is a sieve of the catalog with the lot's history. A sieve that is
+// used again is sized for its last use.
+func (c *Case) sorbent(agent, after string) steps.Sorbent {
+	a := c.Catalog.Agents[agent]
+	share := 1.0
+	if after == Regenerate {
+		share = math.Pow(1-a.Fade.SI, a.Lives.SI-1)
+	}
+	return steps.Sorbent{
+		Key: agent, Loading: a.Isotherm.LoadingKgPerKg, ResidualKgPerKg: c.Lot.ResidualLoading, CapacityShare: share,
+		BeadDiameterM: a.BeadDiameter.SI, BeadKgPerM3: a.BeadDensity.SI, Porosity: a.BeadPorosity.SI, Tortuosity: a.BeadTortuosity.SI,
+		HoldUpM3PerKg: a.HoldUp.SI, MaxDoseKgPerM3: a.MaxDose.SI,
+	}
+}
+
+// dryGrade is the water a dry grade is sold with, the job's own before the catalog's.
+func (c *Case) dryGrade() float64 {
+	item := c.Solvent.Key + "-dry"
+	for _, p := range c.Job.Prices {
+		if p.Item == item && p.WaterMax > 0 {
+			return p.WaterMax
+		}
+	}
+	if p, ok := c.Catalog.Prices[item]; ok && p.WaterMax != nil {
+		return p.WaterMax.SI
+	}
+	return math.NaN()
+}

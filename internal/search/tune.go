@@ -1,0 +1,218 @@
+package search
+
+import (
+	"errors"
+	"fmt"
+	"math"
+
+	"gonum.org/v1/gonum/optimize"
+
+	"parch/internal/costs"
+	"parch/internal/routes"
+	"parch/internal/steps"
+)
+
+// ErrTooSlow means that no setting of a route is done by the time needed.
+var ErrTooSlow = errors.New("too slow")
+
+// soakHours are the stands that fit a working week (common practice, no source):
+// a shift, overnight, one to seven days and what lies between.
+var soakHours = []float64{8, 16, 24, 36, 48, 64, 72, 96, 120, 168}
+
+// Tuner finds the best settings of the routes of one case.
+type Tuner struct {
+	Case      *routes.Case
+	Book      costs.Book
+	Objective Objective
+}
+
+// trial is a run and how good it is.
+type trial struct {
+	run   routes.Run
+	score float64
+}
+
+// scoreMissed ranks routes that miss the target behind all that reach it, by
+// how far they got.
+const scoreMissed = 1e9
+
+func (t *Tuner) score(run *routes.Run) (float64, error) {
+	value, err := t.Objective.Of(run, t.Book, t.Case.Lot.BatchesPerYear)
+	if err != nil || run.Meets {
+		return value, err
+	}
+	return scoreMissed * (1 + math.Max(0, math.Log(run.WaterOut/t.Case.Lot.Target))), nil
+}
+
+// Tune returns the run with the best settings.
+func (t *Tuner) Tune(r routes.Route) (routes.Run, error) {
+	place := handOverPlace(r)
+	if place < 0 {
+		best, err := t.bestSoak(r, nil)
+		return best.run, err
+	}
+	lo, hi, err := t.handOverRange(r, place)
+	if err != nil {
+		return routes.Run{}, err
+	}
+	best, err := t.bestHandOver(r, place, math.Log(lo), math.Log(hi))
+	return best.run, err
+}
+
+// handOverPlace is the stage whose outlet is free to choose: a trap that is
+// followed by another step. -1 if there is none.
+func handOverPlace(r routes.Route) int {
+	for i, s := range r[:len(r)-1] {
+		if s.Kind == steps.Trap {
+			return i
+		}
+	}
+	return -1
+}
+
+// handOverRange is from what the trap can do at best to what it is given.
+func (t *Tuner) handOverRange(r routes.Route, place int) (lo, hi float64, err error) {
+	run, err := t.Case.Run(r, settings(r, place, 0, soakHours[0], routes.Discard))
+	if err != nil {
+		return 0, 0, err
+	}
+	trap := run.Outcomes[place]
+	return trap.Out.Water() * 1e6, trap.In.Water() * 1e6, nil
+}
+
+func settings(r routes.Route, place int, handOver, hours float64, after string) routes.Settings {
+	s := routes.Settings{HandOverMgPerKg: make([]float64, len(r)-1)}
+	if place >= 0 {
+		s.HandOverMgPerKg[place] = handOver
+	}
+	for _, stage := range r {
+		if stage.Kind == steps.Soak {
+			s.SoakHours = append(s.SoakHours, hours)
+			s.Sieve = append(s.Sieve, after)
+		}
+	}
+	return s
+}
+
+const coarsePoints = 9
+
+// bestHandOver scans ln(hand-over) coarsely and refines around the best point
+// with Nelder & Mead's method in one bounded variable.
+func (t *Tuner) bestHandOver(r routes.Route, place int, lo, hi float64) (trial, error) {
+	best := trial{score: math.Inf(1)}
+	var last error
+	try := func(u float64) float64 {
+		found, err := t.bestSoak(r, func(hours float64, after string) routes.Settings {
+			return settings(r, place, math.Exp(u), hours, after)
+		})
+		if err != nil {
+			last = err
+			return math.Inf(1)
+		}
+		if found.score < best.score {
+			best = found
+		}
+		return found.score
+	}
+	bestU := lo
+	spacing := (hi - lo) / (coarsePoints - 1)
+	lowest := math.Inf(1)
+	for i := range coarsePoints {
+		u := lo + spacing*float64(i)
+		if s := try(u); s < lowest {
+			lowest, bestU = s, u
+		}
+	}
+	if math.IsInf(lowest, 1) {
+		return best, last
+	}
+	refine(try, math.Max(lo, bestU-spacing), math.Min(hi, bestU+spacing))
+	return best, nil
+}
+
+// refine minimises f between lo and hi; u = lo + (hi - lo)/(1 + exp(-z)) keeps
+// the free variable z inside.
+func refine(f func(u float64) float64, lo, hi float64) {
+	inside := func(z []float64) float64 { return f(lo + (hi-lo)/(1+math.Exp(-z[0]))) }
+	limits := &optimize.Settings{FuncEvaluations: 40, Converger: &optimize.FunctionConverge{Relative: 1e-7, Iterations: 12}}
+	// The best point seen is kept by f itself; running into the limit is no failure.
+	_, _ = optimize.Minimize(optimize.Problem{Func: inside}, []float64{0}, limits, &optimize.NelderMead{SimplexSize: 1})
+}
+
+// bestSoak tries the stands and what is done with the sieve afterwards.
+func (t *Tuner) bestSoak(r routes.Route, with func(hours float64, after string) routes.Settings) (trial, error) {
+	if with == nil {
+		with = func(hours float64, after string) routes.Settings { return settings(r, -1, 0, hours, after) }
+	}
+	if !hasSoak(r) {
+		return t.one(r, with(0, ""))
+	}
+	hours, err := t.hoursOnOffer(r, with)
+	if err != nil {
+		return trial{}, err
+	}
+	best := trial{score: math.Inf(1)}
+	for _, h := range hours {
+		for _, after := range []string{routes.Regenerate, routes.Discard} {
+			found, err := t.one(r, with(h, after))
+			if errors.Is(err, ErrTooSlow) {
+				continue
+			}
+			if err != nil {
+				return trial{}, err
+			}
+			if found.score < best.score {
+				best = found
+			}
+		}
+	}
+	if math.IsInf(best.score, 1) {
+		return best, fmt.Errorf("%w: needed within %.3g h", ErrTooSlow, t.Case.Lot.NeededWithinS/3600)
+	}
+	return best, nil
+}
+
+func (t *Tuner) one(r routes.Route, s routes.Settings) (trial, error) {
+	run, err := t.Case.Run(r, s)
+	if err != nil {
+		return trial{}, err
+	}
+	if limit := t.Case.Lot.NeededWithinS / 3600; limit > 0 && run.HoursTotal > limit*(1+1e-9) {
+		return trial{}, fmt.Errorf("%w: takes %.3g h, needed within %.3g h", ErrTooSlow, run.HoursTotal, limit)
+	}
+	score, err := t.score(&run)
+	return trial{run, score}, err
+}
+
+// hoursOnOffer are the usual stands and the longest that is done in time.
+func (t *Tuner) hoursOnOffer(r routes.Route, with func(float64, string) routes.Settings) ([]float64, error) {
+	limit := t.Case.Lot.NeededWithinS / 3600
+	if limit == 0 {
+		return soakHours, nil
+	}
+	const probe = 1.0
+	run, err := t.Case.Run(r, with(probe, routes.Discard))
+	if err != nil {
+		return nil, err
+	}
+	longest := math.Floor(2*(limit-(run.HoursTotal-probe))) / 2
+	if longest <= 0 {
+		return nil, fmt.Errorf("%w: the other steps take %.3g h, needed within %.3g h", ErrTooSlow, run.HoursTotal-probe, limit)
+	}
+	var hours []float64
+	for _, h := range soakHours {
+		if h < longest {
+			hours = append(hours, h)
+		}
+	}
+	return append(hours, longest), nil
+}
+
+func hasSoak(r routes.Route) bool {
+	for _, s := range r {
+		if s.Kind == steps.Soak {
+			return true
+		}
+	}
+	return false
+}

@@ -1,0 +1,115 @@
+package steps
+
+import (
+	"fmt"
+	"math"
+
+	"parch/internal/thermo"
+)
+
+// SoakFor stands a lot over the sorbent dose that reaches goal (kg/kg) in timeS,
+// or over the largest practical dose where none does.
+func SoakFor(m *thermo.Mixture, feed Lot, goal, timeS float64, sorbent Sorbent, rig SoakRig) (Outcome, error) {
+	b := newBath(m, feed, sorbent, rig)
+	dose, err := b.dose(goal, timeS)
+	if err != nil {
+		return Outcome{}, err
+	}
+	return b.run(goal, timeS, dose)
+}
+
+// SoakOver stands a lot over a given dose (kg per m3 of solvent) for timeS.
+func SoakOver(m *thermo.Mixture, feed Lot, doseKgPerM3, timeS float64, sorbent Sorbent, rig SoakRig) (Outcome, error) {
+	b := newBath(m, feed, sorbent, rig)
+	return b.run(math.NaN(), timeS, SoakDose{Capacity: math.NaN(), Speed: math.NaN(), Dose: doseKgPerM3, Enough: true})
+}
+
+const soakPoints = 25
+
+func (b *bath) run(goal, timeS float64, dose SoakDose) (Outcome, error) {
+	floor, err := b.floor()
+	if err != nil {
+		return Outcome{}, err
+	}
+	feed := b.feed.Water()
+	doseKg := dose.Dose * b.volumeM3
+	eq := feed
+	if dose.Dose > 0 {
+		if eq, err = b.equilibrium(doseKg); err != nil {
+			return Outcome{}, err
+		}
+	}
+	rate := b.rate(dose.Dose)
+	at := func(t float64) float64 { return eq + (feed-eq)*math.Exp(-rate*t) }
+	out := at(timeS)
+
+	vessels := float64(b.rig.Vessels)
+	heldKg := doseKg * b.sorbent.HoldUpM3PerKg * b.m.Solvent.DensityKgPerM3.At(b.rig.TempK)
+	heldKg = math.Min(heldKg, b.feed.SolventKg)
+	keptKg := b.feed.SolventKg - heldKg
+	ratio := out / (1 - out)
+	o := Outcome{
+		Kind: Soak, Agent: b.sorbent.Key, In: b.feed,
+		Out:           Lot{SolventKg: keptKg, WaterKg: keptKg * ratio, TempK: b.rig.TempK},
+		Floor:         floor,
+		HoursTotal:    timeS/secondsPerHour + vessels*b.rig.AttendedS/secondsPerHour,
+		HoursAttended: vessels * b.rig.AttendedS / secondsPerHour,
+		AgentKg:       doseKg,
+		Losses:        []Loss{{"held by the drained beads", heldKg}},
+	}
+	for i := range soakPoints {
+		t := timeS * float64(i) / (soakPoints - 1)
+		o.Course = append(o.Course, Point{Hours: t / secondsPerHour, Water: at(t)})
+	}
+	o.account(b.m.Solvent, b.rig.TempK)
+	takenKg := b.feed.WaterKg - b.feed.SolventKg*ratio
+	o.Balance.WaterRemovedKg = takenKg + heldKg*ratio
+	o.Why, o.WhyText = b.reason(goal, out, floor, timeS, dose)
+	o.Figures = b.figures(dose, eq, takenKg, doseKg, rate)
+	return o, nil
+}
+
+func (b *bath) figures(dose SoakDose, eq, takenKg, doseKg, rate float64) []Figure {
+	loading := b.sorbent.ResidualKgPerKg
+	if doseKg > 0 {
+		loading += takenKg / doseKg
+	}
+	return []Figure{
+		{"dose", "g/L", dose.Dose},
+		{"dose for capacity", "g/L", dose.Capacity},
+		{"dose for speed", "g/L", dose.Speed},
+		{"vessels", "", float64(b.rig.Vessels)},
+		{"liquid height", "m", b.rig.DepthM},
+		{"rate constant K", "1/h", rate * secondsPerHour},
+		{"equilibrium at this dose", "mg/kg", eq * mgPerKg},
+		{"water taken up", "g", takenKg * 1e3},
+		{"loading before", "g/100 g", b.sorbent.ResidualKgPerKg * 100},
+		{"loading after", "g/100 g", loading * 100},
+	}
+}
+
+func (b *bath) reason(goal, out, floor, timeS float64, dose SoakDose) (Stop, string) {
+	hours := timeS / secondsPerHour
+	switch {
+	case math.IsNaN(goal):
+		return AtTime, fmt.Sprintf("%.3g mg/kg after %.3g h", out*mgPerKg, hours)
+	case dose.Enough:
+		return AtTarget, fmt.Sprintf("%.3g mg/kg in %.3g h; %s rules the dose", goal*mgPerKg, hours, ruling(dose))
+	case goal <= floor:
+		return AtFloor, fmt.Sprintf("floor: a sieve that still holds %.2g g/100 g leaves %.3g mg/kg, whatever the dose", b.sorbent.ResidualKgPerKg*100, floor*mgPerKg)
+	}
+	eq, err := b.equilibrium(dose.Dose * b.volumeM3)
+	if err != nil || eq >= goal {
+		return AtCapacity, fmt.Sprintf("capacity: %.3g g/L, the largest practical dose, holds too little", dose.Dose)
+	}
+	wait := math.Log((b.feed.Water()-eq)/(goal-eq)) / b.rate(dose.Dose) / secondsPerHour
+	return AtTime, fmt.Sprintf("time: no dose reaches %.3g mg/kg in %.3g h in a still vessel; stir, or wait %.0f h", goal*mgPerKg, hours, math.Ceil(wait))
+}
+
+// ruling names the larger of the two sizes of a dose.
+func ruling(d SoakDose) string {
+	if d.Speed > d.Capacity {
+		return "speed"
+	}
+	return "capacity"
+}

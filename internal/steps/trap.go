@@ -1,0 +1,321 @@
+package steps
+
+import (
+	"errors"
+	"fmt"
+	"math"
+
+	"gonum.org/v1/gonum/integrate/quad"
+
+	"parch/internal/thermo"
+)
+
+// TrapRules are the practical limits of a water-separating trap.
+type TrapRules struct {
+	LowestOutlet     float64 // kg/kg, a trap's outlet is never claimed below it
+	Efficiency       float64 // water removed per vapour against the ideal, below EfficiencyBelow
+	EfficiencyBelow  float64 // kg/kg
+	ShortestRefluxS  float64
+	SetUpS           float64
+	AttendedShare    float64 // of the hours at the heater
+	ShutDownS        float64 // cool and transfer, each charge
+	DrainingS        float64 // attended, each draining
+	VapourLossPerDay float64 // share of the charge
+	CoolingFlowM3S   float64 // flow that is really run
+	CoolingRiseK     float64
+}
+
+// TrapRig is the still and its receiver.
+type TrapRig struct {
+	HeaterW        float64
+	HeatShare      float64 // of the heater's power that reaches the liquid
+	Returns        string  // light, heavy or either
+	FillVolumeM3   float64 // condensate held before anything returns
+	UsableVolumeM3 float64 // aqueous layer held before it must be drained
+	RoomK          float64
+	Charges        int // the lot is boiled in so many equal charges
+}
+
+// TrapEquilibrium is what pot and receiver do at one pressure and one receiver
+// temperature, whatever the lot and the still.
+type TrapEquilibrium struct {
+	Mixture               *thermo.Mixture
+	ReceiverK, PressurePa float64
+	Floor                 thermo.Floor
+	Azeotrope             thermo.Azeotrope
+}
+
+// NewTrapEquilibrium solves for the trap's floor and the azeotrope, or says why
+// no trap works there.
+func NewTrapEquilibrium(m *thermo.Mixture, receiverK, pressurePa float64) (*TrapEquilibrium, error) {
+	floor, err := m.TrapFloor(receiverK, pressurePa)
+	if err != nil {
+		return nil, err
+	}
+	if floor.Return == thermo.None {
+		return nil, fmt.Errorf("%w: %s", ErrNoTrap, floor.Reason)
+	}
+	az, err := m.FindAzeotrope(pressurePa)
+	if err != nil {
+		return nil, err
+	}
+	return &TrapEquilibrium{m, receiverK, pressurePa, floor, az}, nil
+}
+
+// ErrNoTrap means that a trap cannot dry the mixture; the error says why.
+var ErrNoTrap = errors.New("a trap does not work here")
+
+// floorMargin is how close to its floor a trap is run: the vapour needed grows
+// without bound as the floor is approached.
+const floorMargin = 1.05
+
+// RunTrap boils a lot under a water-separating trap until the pot holds goal
+// (kg/kg) or the trap can do no more.
+//
+// With the receiver full, the pot loses only the aqueous layer:
+//
+//	dN_i/dn = -l x_i,aq,  l = (y_w - x_w,org)/(x_w,aq - x_w,org)
+//
+// per mole n of vapour, so N_solvent is linear in N_water and the vapour needed
+// is an integral over ln N_water. Before that, the receiver fills with
+// condensate and nothing returns.
+func RunTrap(eq *TrapEquilibrium, feed Lot, goal float64, rig TrapRig, rules TrapRules) (Outcome, error) {
+	if rig.Returns != "either" && rig.Returns != string(eq.Floor.Return) {
+		return Outcome{}, fmt.Errorf("%w: %s needs a %s return, the receiver returns the %s layer", ErrNoTrap, eq.Mixture.Solvent.Key, eq.Floor.Return, rig.Returns)
+	}
+	reach, why := trapReach(feed.Water(), goal, eq.Floor.Water, rules.LowestOutlet)
+	b := boiling{eq: eq, m: eq.Mixture, rig: rig, rules: rules}
+	b.lowest = math.Min(feed.Water(), math.Max(rules.LowestOutlet, floorMargin*eq.Floor.Water))
+	if err := b.start(feed); err != nil {
+		return Outcome{}, err
+	}
+	if err := b.fill(); err != nil {
+		return Outcome{}, err
+	}
+	if err := b.reflux(reach); err != nil {
+		return Outcome{}, err
+	}
+	return b.outcome(feed, goal, why), nil
+}
+
+// trapReach is the water a trap is run to, and why it stops there.
+func trapReach(feed, goal, floor, lowest float64) (reach float64, why Stop) {
+	reach, why = goal, AtTarget
+	if lowest > reach {
+		reach, why = lowest, AtPractice
+	}
+	if f := floorMargin * floor; f > reach {
+		reach, why = f, AtFloor
+	}
+	return math.Min(reach, feed), why
+}
+
+// boiling is one charge in the pot.
+type boiling struct {
+	eq    *TrapEquilibrium
+	m     *thermo.Mixture
+	rig   TrapRig
+	rules TrapRules
+
+	lowest           float64 // kg/kg, the least water a trap can claim
+	water, solvent   float64 // mol in the pot
+	startK           float64
+	heatUpJ, boilUpJ float64
+	boiledMol        float64
+	boiledKg         float64
+	aqueousMol       float64 // collected
+	heldMol          float64 // organic layer kept in the receiver
+	course           []Point
+}
+
+func (b *boiling) start(feed Lot) error {
+	charges := float64(b.rig.Charges)
+	b.water = feed.WaterKg / charges / b.m.Water.MolarMassKgPerMol
+	b.solvent = feed.SolventKg / charges / b.m.Solvent.MolarMassKgPerMol
+	az := b.eq.Azeotrope
+	if az.Kind == thermo.Heterogeneous && b.fraction() > az.Layers.XAqueous {
+		return fmt.Errorf("%w: at %.3g %% water the pot is water with a little %s; settle it first", ErrNoTrap, 100*feed.Water(), b.m.Solvent.Key)
+	}
+	v, err := b.vapour(b.fraction())
+	if err != nil {
+		return err
+	}
+	b.startK = v.TempK
+	if b.startK <= b.rig.RoomK {
+		return fmt.Errorf("%w: %s boils at %.1f °C at %.4g kPa, not above the room's %.1f °C", ErrNoTrap, b.m.Solvent.Key, b.startK-273.15, b.eq.PressurePa/1e3, b.rig.RoomK-273.15)
+	}
+	mid := (b.startK + b.rig.RoomK) / 2
+	b.heatUpJ = (b.water*b.m.Water.HeatCapacityJPerMolK.At(mid) + b.solvent*b.m.Solvent.HeatCapacityJPerMolK.At(mid)) * (b.startK - b.rig.RoomK)
+	return nil
+}
+
+func (b *boiling) fraction() float64 { return b.water / (b.water + b.solvent) }
+
+// twoLiquids reports whether a pot of water fraction x boils as two layers.
+func (b *boiling) twoLiquids(x float64) bool {
+	return b.eq.Azeotrope.Kind == thermo.Heterogeneous && x > b.eq.Azeotrope.Layers.XOrganic && x < b.eq.Azeotrope.Layers.XAqueous
+}
+
+// vapour over a pot of overall water fraction x.
+func (b *boiling) vapour(x float64) (thermo.Vapour, error) {
+	if b.twoLiquids(x) {
+		return thermo.Vapour{TempK: b.eq.Azeotrope.TempK, YWater: b.eq.Azeotrope.YWater}, nil
+	}
+	return b.m.BubbleFrom(x, b.eq.PressurePa, b.startK)
+}
+
+// latent is the heat that evaporates one mole of vapour, J/mol.
+func (b *boiling) latent(v thermo.Vapour) float64 {
+	return v.YWater*b.m.Water.HeatOfVaporizationJ.At(v.TempK) + (1-v.YWater)*b.m.Solvent.HeatOfVaporizationJ.At(v.TempK)
+}
+
+// reheat is the heat that brings one mole of the returned layer back to the boil.
+func (b *boiling) reheat(tK float64) float64 {
+	mid := (tK + b.eq.ReceiverK) / 2
+	x := b.eq.Floor.Layers.XOrganic
+	return (x*b.m.Water.HeatCapacityJPerMolK.At(mid) + (1-x)*b.m.Solvent.HeatCapacityJPerMolK.At(mid)) * (tK - b.eq.ReceiverK)
+}
+
+func (b *boiling) molarMass(yWater float64) float64 {
+	return yWater*b.m.Water.MolarMassKgPerMol + (1-yWater)*b.m.Solvent.MolarMassKgPerMol
+}
+
+// aqueousShare is the share of the condensate that leaves as aqueous layer.
+func (b *boiling) aqueousShare(yWater float64) float64 {
+	l := b.eq.Floor.Layers
+	return (yWater - l.XOrganic) / (l.XAqueous - l.XOrganic)
+}
+
+const fillSteps = 24
+
+// fill boils the receiver full; nothing returns (Rayleigh, dN_i/dn = -y_i).
+// The organic layer of that condensate stays in the receiver.
+func (b *boiling) fill() error {
+	v, err := b.vapour(b.fraction())
+	if err != nil {
+		return err
+	}
+	molarVolume := b.m.MolarVolume(v.YWater, b.eq.ReceiverK)
+	step := b.rig.FillVolumeM3 / molarVolume / fillSteps
+	for range fillSteps {
+		half := step / 2
+		mid, err := b.vapour((b.water - half*v.YWater) / (b.water + b.solvent - half))
+		if err != nil {
+			return err
+		}
+		if step >= b.solvent {
+			return fmt.Errorf("%w: the receiver holds %.3g L and would take the whole charge", ErrNoTrap, 1e3*b.rig.FillVolumeM3)
+		}
+		b.water -= step * mid.YWater
+		b.solvent -= step * (1 - mid.YWater)
+		b.count(step, mid, 0)
+		if v, err = b.vapour(b.fraction()); err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
+// count books step moles of vapour; share of it returned as organic layer.
+func (b *boiling) count(step float64, v thermo.Vapour, returned float64) {
+	l := math.Min(1, math.Max(0, b.aqueousShare(v.YWater)))
+	b.boiledMol += step
+	b.boiledKg += step * b.molarMass(v.YWater)
+	b.boilUpJ += step * (b.latent(v) + returned*b.reheat(v.TempK))
+	b.aqueousMol += step * l
+	if returned == 0 {
+		b.heldMol += step * (1 - l)
+	}
+	b.note()
+}
+
+func (b *boiling) note() {
+	x := b.fraction()
+	b.course = append(b.course, Point{
+		Hours: (b.heatUpJ + b.boilUpJ) / b.netW() / 3600, Water: b.m.MassFraction(x),
+		BoiledKg: b.boiledKg, AqueousM3: b.aqueousM3(),
+	})
+}
+
+func (b *boiling) netW() float64 { return b.rig.HeaterW * b.rig.HeatShare }
+
+func (b *boiling) aqueousM3() float64 {
+	return b.aqueousMol * b.m.MolarVolume(b.eq.Floor.Layers.XAqueous, b.eq.ReceiverK)
+}
+
+// reflux runs the steady return down to the water fraction reach (kg/kg).
+func (b *boiling) reflux(reach float64) error {
+	end := b.m.MoleFraction(reach)
+	if b.twoLiquids(b.fraction()) {
+		stop := math.Max(end, b.eq.Azeotrope.Layers.XOrganic)
+		if err := b.segment(stop); err != nil {
+			return err
+		}
+	}
+	corner := b.m.MoleFraction(b.rules.EfficiencyBelow)
+	for b.fraction() > end*(1+1e-12) {
+		stop := math.Max(end, b.fraction()/math.E)
+		if corner < b.fraction()*(1-1e-12) && corner > stop {
+			stop = corner
+		}
+		if err := b.segment(stop); err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
+const quadraturePoints = 24
+
+// segment takes the pot down to the water mole fraction x along the straight
+// line N_solvent(N_water) that the removal of aqueous layer draws.
+func (b *boiling) segment(x float64) error {
+	xAq := b.eq.Floor.Layers.XAqueous
+	solventPerWater := (1 - xAq) / xAq
+	water0, solvent0 := b.water, b.solvent
+	rest := solvent0 - solventPerWater*water0
+	water1 := x * rest / (1 - x*(1+solventPerWater))
+	efficiency := 1.0
+	if b.m.MassFraction(x) < b.rules.EfficiencyBelow*(1-1e-9) {
+		efficiency = b.rules.Efficiency
+	}
+	two := b.twoLiquids((x + b.fraction()) / 2)
+	var failed error
+	perLnWater := func(lnWater float64) (mol, kg, joule float64) {
+		water := math.Exp(lnWater)
+		v := thermo.Vapour{TempK: b.eq.Azeotrope.TempK, YWater: b.eq.Azeotrope.YWater}
+		if !two {
+			var err error
+			if v, err = b.m.BubbleFrom(water/(water+rest+solventPerWater*water), b.eq.PressurePa, b.startK); err != nil {
+				failed = err
+			}
+		}
+		l := b.aqueousShare(v.YWater)
+		mol = water / (l * xAq) / efficiency
+		return mol, mol * b.molarMass(v.YWater), mol * (b.latent(v) + (1-l)*b.reheat(v.TempK))
+	}
+	mol, kg, joule := integrate3(perLnWater, math.Log(water1), math.Log(water0))
+	if failed != nil {
+		return failed
+	}
+	b.boiledMol += mol
+	b.boiledKg += kg
+	b.boilUpJ += joule
+	b.aqueousMol += (water0 - water1) / xAq
+	b.water, b.solvent = water1, rest+solventPerWater*water1
+	b.note()
+	return nil
+}
+
+// integrate3 integrates three quantities at once by Gauss-Legendre quadrature.
+func integrate3(f func(u float64) (a, b, c float64), lo, hi float64) (a, b, c float64) {
+	var x, weight [quadraturePoints]float64
+	quad.Legendre{}.FixedLocations(x[:], weight[:], lo, hi)
+	for i := range x {
+		fa, fb, fc := f(x[i])
+		a += weight[i] * fa
+		b += weight[i] * fb
+		c += weight[i] * fc
+	}
+	return a, b, c
+}

@@ -1,0 +1,131 @@
+package steps
+
+import (
+	"fmt"
+	"math"
+
+	"parch/internal/thermo"
+)
+
+const (
+	secondsPerHour = 3600.0
+	secondsPerDay  = 86400.0
+	joulePerKWh    = 3.6e6
+	litrePerM3     = 1e3
+	mgPerKg        = 1e6 // mg/kg in one kg/kg
+)
+
+// outcome turns one charge into the whole lot's account.
+func (b *boiling) outcome(feed Lot, goal float64, why Stop) Outcome {
+	n := float64(b.rig.Charges)
+	heatUpS := b.heatUpJ / b.netW()
+	boilS := b.boilUpJ / b.netW()
+	refluxS := math.Max(boilS, b.rules.ShortestRefluxS)
+	aqueousM3 := b.aqueousM3()
+	drainings := math.Max(1, math.Ceil(aqueousM3/b.rig.UsableVolumeM3-1e-9))
+	hotS := heatUpS + refluxS
+
+	lost := b.losses(refluxS)
+	solventOutKg := b.solvent*b.m.Solvent.MolarMassKgPerMol - lost.vapourKg
+	waterOutKg, regainedKg := b.waterOut(solventOutKg)
+	o := Outcome{
+		Kind: Trap, In: feed,
+		Out:           Lot{SolventKg: n * solventOutKg, WaterKg: n * waterOutKg, TempK: b.rig.RoomK},
+		Floor:         b.eq.Floor.Water,
+		Why:           why,
+		WhyText:       b.reason(goal, why),
+		HoursTotal:    (b.rules.SetUpS + n*(hotS+b.rules.ShutDownS)) / secondsPerHour,
+		HoursAttended: (b.rules.SetUpS + n*(hotS*b.rules.AttendedShare+b.rules.ShutDownS+drainings*b.rules.DrainingS)) / secondsPerHour,
+		EnergyKWh:     n * b.rig.HeaterW * hotS / joulePerKWh,
+		CoolingWaterL: n * b.coolingM3(refluxS) * litrePerM3,
+		Course:        b.course,
+	}
+	o.Losses = []Loss{
+		{"dissolved in the aqueous layer", n * lost.aqueousSolventKg},
+		{"organic layer left in the receiver", n * lost.heldSolventKg},
+		{"vapour past the condenser", n * lost.vapourKg},
+	}
+	o.Discards = []Discard{
+		{AqueousWaste, "aqueous layer", n * (lost.aqueousSolventKg + lost.aqueousWaterKg)},
+		{SolventWaste, "organic layer left in the receiver", n * (lost.heldSolventKg + lost.heldWaterKg)},
+	}
+	o.account(b.m.Solvent, b.rig.RoomK)
+	o.Balance.WaterRemovedKg = n * (lost.aqueousWaterKg + lost.heldWaterKg - regainedKg)
+	o.Balance.HeatInJ = n * b.netW() * hotS
+	o.Balance.HeatUsedJ = n * (b.heatUpJ + b.boilUpJ + b.netW()*(refluxS-boilS))
+	o.Figures = []Figure{
+		{"still charges", "", n},
+		{"boiling temperature at the start", "°C", b.startK - 273.15},
+		{"heat-up, each charge", "h", heatUpS / secondsPerHour},
+		{"reflux, each charge", "h", refluxS / secondsPerHour},
+		{"vapour boiled up, each charge", "kg", b.boiledKg},
+		{"vapour as a share of the charge", "%", 100 * b.boiledKg * n / feed.MassKg()},
+		{"aqueous layer, each charge", "mL", aqueousM3 * 1e6},
+		{"drainings, each charge", "", drainings},
+		{"floor of the pot", "mg/kg", b.eq.Floor.Water * mgPerKg},
+	}
+	return o
+}
+
+// waterOut is the water in the product. Filling the receiver can take a small
+// charge below what a trap can claim; droplets and moist air bring it back.
+func (b *boiling) waterOut(solventOutKg float64) (waterKg, regainedKg float64) {
+	waterKg = b.water * b.m.Water.MolarMassKgPerMol
+	claimedKg := solventOutKg * b.lowest / (1 - b.lowest)
+	return math.Max(waterKg, claimedKg), math.Max(0, claimedKg-waterKg)
+}
+
+type trapLosses struct {
+	aqueousSolventKg, aqueousWaterKg float64
+	heldSolventKg, heldWaterKg       float64
+	vapourKg                         float64
+}
+
+func (b *boiling) losses(refluxS float64) trapLosses {
+	l := b.eq.Floor.Layers
+	water, solvent := b.m.Water.MolarMassKgPerMol, b.m.Solvent.MolarMassKgPerMol
+	return trapLosses{
+		aqueousSolventKg: b.aqueousMol * (1 - l.XAqueous) * solvent,
+		aqueousWaterKg:   b.aqueousMol * l.XAqueous * water,
+		heldSolventKg:    b.heldMol * (1 - l.XOrganic) * solvent,
+		heldWaterKg:      b.heldMol * l.XOrganic * water,
+		vapourKg:         b.solvent * solvent * b.rules.VapourLossPerDay * refluxS / secondsPerDay,
+	}
+}
+
+// coolingM3 is the cooling water of one charge: the flow that is run, or more
+// where the condenser's duty at the given rise needs it.
+func (b *boiling) coolingM3(refluxS float64) float64 {
+	const heatCapacity, density = 4180.0, 998.0 // J/(kg K), kg/m3 of water at 20 °C
+	needed := b.netW() / (heatCapacity * density * b.rules.CoolingRiseK)
+	return math.Max(b.rules.CoolingFlowM3S, needed) * refluxS
+}
+
+func (b *boiling) reason(goal float64, why Stop) string {
+	switch why {
+	case AtFloor:
+		return fmt.Sprintf("floor: the condensate of a pot at %.3g mg/kg no longer splits at %.0f °C; run to %.0f %% above it",
+			b.eq.Floor.Water*mgPerKg, b.eq.ReceiverK-273.15, 100*(floorMargin-1))
+	case AtPractice:
+		return fmt.Sprintf("practical limit: droplets and moist air keep a trap's outlet at %.3g mg/kg or more, whatever its floor of %.2g mg/kg",
+			b.rules.LowestOutlet*mgPerKg, b.eq.Floor.Water*mgPerKg)
+	default:
+		return fmt.Sprintf("hand-over at %.3g mg/kg reached", goal*mgPerKg)
+	}
+}
+
+// account fills in the sums that follow from lots, losses and discards.
+func (o *Outcome) account(solvent *thermo.Pure, roomK float64) {
+	density := solvent.DensityKgPerM3.At(roomK)
+	var lostKg float64
+	for _, l := range o.Losses {
+		lostKg += l.SolventKg
+	}
+	o.SolventLostL = lostKg / density * litrePerM3
+	for _, d := range o.Discards {
+		o.WasteKg += d.Kg
+	}
+	o.Balance.WaterInKg, o.Balance.WaterOutKg = o.In.WaterKg, o.Out.WaterKg
+	o.Balance.SolventInKg, o.Balance.SolventOutKg = o.In.SolventKg, o.Out.SolventKg
+	o.Balance.SolventRemovedKg = lostKg
+}

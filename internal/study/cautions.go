@@ -1,0 +1,57 @@
+package study
+
+import (
+	"slices"
+
+	"parch/catalog"
+	"parch/internal/routes"
+	"parch/internal/steps"
+)
+
+// cautions that apply to a route on a lot, in the catalog's order.
+func cautions(k *routes.Case, r routes.Route) []catalog.Caution {
+	var out []catalog.Caution
+	for _, c := range k.Catalog.Cautions {
+		if applies(c, k, r) {
+			out = append(out, c)
+		}
+	}
+	for _, s := range r {
+		if s.Agent == "" {
+			continue
+		}
+		if v, ok := k.Catalog.Verdict(k.Solvent, s.Agent); ok && v.Word != "ok" {
+			out = append(out, catalog.Caution{
+				Code: "pair-" + s.Agent, Level: "caution", Origin: v.Origin,
+				Text: k.Catalog.Agents[s.Agent].Name + " with " + k.Solvent.Name + " is " + v.Word + ": " + v.Reason + ".",
+			})
+		}
+	}
+	return out
+}
+
+func applies(c catalog.Caution, k *routes.Case, r routes.Route) bool {
+	h := k.Solvent.Hazards
+	switch {
+	case c.Peroxide && (h.PeroxideClass == "none" || h.PeroxideClass == ""):
+		return false
+	case c.Flammable && k.Solvent.FlashPoint == nil:
+		return false
+	case c.Reclaimed && !k.Lot.Reclaimed:
+		return false
+	case len(c.Classes) > 0 && !slices.Contains(c.Classes, k.Solvent.Class):
+		return false
+	case len(c.Solvents) > 0 && !slices.Contains(c.Solvents, k.Solvent.Key):
+		return false
+	}
+	return anyStep(r, func(s routes.Stage) bool {
+		return (len(c.Steps) == 0 || slices.Contains(c.Steps, string(s.Kind))) &&
+			(len(c.Agents) == 0 || slices.Contains(c.Agents, s.Agent))
+	})
+}
+
+func anyStep(r routes.Route, ok func(routes.Stage) bool) bool { return slices.ContainsFunc(r, ok) }
+
+func uses(r routes.Route, kind steps.Kind) bool {
+	return anyStep(r, func(s routes.Stage) bool { return s.Kind == kind })
+}

@@ -1,0 +1,155 @@
+package study
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"math"
+	"sort"
+
+	"golang.org/x/sync/errgroup"
+
+	"parch/catalog"
+	"parch/internal/costs"
+	"parch/internal/job"
+	"parch/internal/routes"
+	"parch/internal/search"
+)
+
+// Version of the program.
+const Version = "0.1.0"
+
+// Options of a comparison.
+type Options struct {
+	// Settings of an earlier run, by lot name and route id, used instead of tuning.
+	Settings map[string]map[string]routes.Settings
+}
+
+// Compare runs every sensible route of every lot and ranks them.
+func Compare(ctx context.Context, j *job.Job, c *catalog.Catalog, o Options) (*Report, error) {
+	book, err := costs.NewBook(c, j)
+	if err != nil {
+		return nil, err
+	}
+	r := &Report{Version: Version, CatalogDate: c.Date, Job: j, Book: book, Lots: make([]Lot, len(j.Lots)), Warnings: j.Warnings}
+	group, ctx := errgroup.WithContext(ctx)
+	group.SetLimit(8)
+	for i, lot := range j.Lots {
+		group.Go(func() error {
+			l, err := compareLot(ctx, j, lot, c, book, o.Settings[lot.Name])
+			if err != nil {
+				return fmt.Errorf("lot %q: %w", lot.Name, err)
+			}
+			r.Lots[i] = l
+			return nil
+		})
+	}
+	if err := group.Wait(); err != nil {
+		return nil, err
+	}
+	r.Book = usedPrices(r)
+	r.Sources, r.Weak = provenance(r, c)
+	return r, nil
+}
+
+func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog, book costs.Book, given map[string]routes.Settings) (Lot, error) {
+	k, err := routes.NewCase(j, lot, c)
+	if err != nil {
+		return Lot{}, err
+	}
+	l := Lot{
+		Job: lot, Solvent: k.Solvent,
+		AcceptAt: k.Limit.AcceptAt, CannotShow: k.Limit.CannotShow, Uncertainty: k.Limit.Uncertainty, Injections: k.Assay.Injections,
+		Warnings: lotWarnings(k),
+	}
+	if k.Dry() {
+		l.NothingToDo = fmt.Sprintf("nothing to do: the reading of %.4g mg/kg is at or below the %.4g mg/kg at which a target of %.4g mg/kg is accepted; it rests on that Karl Fischer reading of a clear sample",
+			lot.Water*1e6, k.Limit.AcceptAt*1e6, lot.Target*1e6)
+		return l, nil
+	}
+	offered, excluded := k.Candidates()
+	l.Excluded = excluded
+	tuner := &search.Tuner{Case: k, Book: book, Objective: search.Objective(j.Objective)}
+	for _, r := range offered {
+		if err := ctx.Err(); err != nil {
+			return Lot{}, err
+		}
+		run, err := carryOut(tuner, r, given)
+		if reason, ok := refusal(err); ok {
+			l.Excluded = append(l.Excluded, routes.Excluded{ID: r.ID(), Reason: reason})
+			continue
+		}
+		if err != nil {
+			return Lot{}, err
+		}
+		bill, err := book.Bill(run.Uses, run.LitresDelivered, lot.BatchesPerYear, j.Currency)
+		if err != nil {
+			return Lot{}, fmt.Errorf("%s: %w", r.ID(), err)
+		}
+		l.Routes = append(l.Routes, Route{ID: r.ID(), Label: k.Label(r), Run: run, Bill: bill, Cautions: cautions(k, r), Warnings: runWarnings(k, run)})
+	}
+	l.Routes, err = ranked(l.Routes, tuner)
+	sort.SliceStable(l.Excluded, func(a, b int) bool { return l.Excluded[a].ID < l.Excluded[b].ID })
+	return l, err
+}
+
+// carryOut runs a route with the settings given for it, or tunes it.
+func carryOut(t *search.Tuner, r routes.Route, given map[string]routes.Settings) (routes.Run, error) {
+	s, ok := given[r.ID()]
+	if !ok {
+		return t.Tune(r)
+	}
+	if err := s.Fit(r); err != nil {
+		return routes.Run{}, err
+	}
+	return t.Case.Run(r, s)
+}
+
+// refusal tells a route that the physics or the time refuses from a failure of
+// the program.
+func refusal(err error) (reason string, ok bool) {
+	for _, known := range []error{search.ErrTooSlow, routes.ErrRefused} {
+		if errors.Is(err, known) {
+			return err.Error(), true
+		}
+	}
+	return "", false
+}
+
+func ranked(all []Route, t *search.Tuner) ([]Route, error) {
+	entries := make([]search.Entry, len(all))
+	for i := range all {
+		value, err := t.Objective.Of(&all[i].Run, t.Book, t.Case.Lot.BatchesPerYear)
+		if err != nil {
+			return nil, err
+		}
+		perLitre := all[i].Bill.PerLitre.InexactFloat64()
+		all[i].Objective = value
+		entries[i] = search.Entry{ID: all[i].ID, Meets: all[i].Run.Meets, Value: value, CostPerLitre: perLitre, WaterOut: all[i].Run.WaterOut}
+	}
+	sorted := make([]Route, 0, len(all))
+	for place, i := range search.Order(entries) {
+		r := all[i]
+		if r.Run.Meets {
+			r.Rank = place + 1
+		}
+		sorted = append(sorted, r)
+	}
+	return sorted, nil
+}
+
+// usedPrices keeps the prices that some bill rests on.
+func usedPrices(r *Report) costs.Book {
+	used := costs.Book{}
+	for _, l := range r.Lots {
+		for _, route := range l.Routes {
+			for _, line := range route.Bill.Lines {
+				used[line.Item] = r.Book[line.Item]
+			}
+		}
+	}
+	return used
+}
+
+// finite reports whether a number can be shown.
+func finite(x float64) bool { return !math.IsNaN(x) && !math.IsInf(x, 0) }

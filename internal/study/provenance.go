@@ -1,0 +1,153 @@
+package study
+
+import (
+	"maps"
+	"slices"
+	"strings"
+
+	"parch/catalog"
+	"parch/internal/steps"
+)
+
+// provenance lists the references that the report cites and the numbers that
+// rest on memory, common practice or an assumption.
+func provenance(r *Report, c *catalog.Catalog) ([]catalog.Source, []Weak) {
+	p := &shelf{catalog: c, cited: map[string]bool{}, weak: map[string]Weak{}}
+	kinds := map[steps.Kind]bool{}
+	for _, l := range r.Lots {
+		p.solvent(l.Solvent)
+		for _, e := range l.Excluded {
+			p.cite(e.Source)
+		}
+		for _, route := range l.Routes {
+			for _, caution := range route.Cautions {
+				p.cite(caution.Source)
+			}
+			for _, s := range route.Run.Route {
+				kinds[s.Kind] = true
+				if s.Agent != "" {
+					p.agent(c.Agents[s.Agent])
+				}
+			}
+		}
+		p.history(l.Job.SieveHistory)
+	}
+	for _, key := range slices.Sorted(maps.Keys(c.Practice)) {
+		if appliesTo(key, kinds) {
+			p.value("practice: "+key, c.Practice[key])
+		}
+	}
+	for _, key := range slices.Sorted(maps.Keys(c.Assays)) {
+		if key == r.Job.Site.KarlFischer {
+			a := c.Assays[key]
+			p.value(key+" Karl Fischer: repeatability", a.Repeatability)
+			p.value(key+" Karl Fischer: detection limit", a.DetectionLimit)
+		}
+	}
+	p.prices(r)
+	return p.sources(), p.sorted()
+}
+
+// appliesTo reports whether an operating fact enters a route with these steps.
+func appliesTo(key string, kinds map[steps.Kind]bool) bool {
+	owners := map[string]steps.Kind{
+		"trap-": steps.Trap, "heat-": steps.Trap, "draining-": steps.Trap, "cooling-": steps.Trap, "vapour-": steps.Trap,
+		"settle-": steps.Settle, "soak-": steps.Soak, "oven-": steps.Soak, "dose-": steps.Soak, "buy-": steps.Buy,
+	}
+	for prefix, kind := range owners {
+		if strings.HasPrefix(key, prefix) {
+			return kinds[kind]
+		}
+	}
+	return strings.HasPrefix(key, "karl-fischer") || strings.HasPrefix(key, "still-rate") && kinds[steps.Soak]
+}
+
+type shelf struct {
+	catalog *catalog.Catalog
+	cited   map[string]bool
+	weak    map[string]Weak
+}
+
+func (p *shelf) cite(id string) {
+	if _, ok := p.catalog.Sources[id]; ok {
+		p.cited[id] = true
+	}
+}
+
+func (p *shelf) value(what string, v catalog.Value) { p.note(what, v.Text, v.Origin) }
+
+func (p *shelf) note(what, text string, o catalog.Origin) {
+	p.cite(o.Source)
+	if o.Confidence.Weak() {
+		p.weak[what] = Weak{What: what, Value: text, Confidence: string(o.Confidence), Source: o.Source, Note: o.Note}
+	}
+}
+
+func (p *shelf) solvent(s *catalog.Solvent) {
+	for _, one := range []*catalog.Solvent{s, p.catalog.Solvents["water"]} {
+		for _, curve := range []struct {
+			what string
+			c    catalog.Curve
+		}{
+			{"vapour pressure", one.VapourPressure}, {"heat of vaporization", one.HeatOfVaporization},
+			{"heat capacity", one.HeatCapacity}, {"density", one.Density}, {"viscosity", one.Viscosity},
+		} {
+			p.note(one.Name+": "+curve.what, string(curve.c.Equation), curve.c.Origin)
+		}
+	}
+	if s.Water != nil {
+		p.note("water + "+s.Name+": activity model", "quality "+s.Water.Quality, s.Water.Origin)
+	}
+	p.value(s.Name+": mixing rate of a still vessel", s.StillRate)
+	p.note(s.Name+": hazards", s.Hazards.PeroxideNote, s.Hazards.Origin)
+}
+
+func (p *shelf) agent(a *catalog.Agent) {
+	if a.Isotherm != nil {
+		p.note(a.Name+": isotherm", "", a.Isotherm.Origin)
+	}
+	for _, f := range []struct {
+		what string
+		v    *catalog.Value
+	}{
+		{"solvent kept on drained beads", a.HoldUp}, {"lives", a.Lives}, {"capacity lost per regeneration", a.Fade},
+		{"bead diameter", a.BeadDiameter}, {"bead density", a.BeadDensity}, {"bead porosity", a.BeadPorosity},
+		{"bead tortuosity", a.BeadTortuosity}, {"largest practical dose", a.MaxDose},
+	} {
+		if f.v != nil {
+			p.value(a.Name+": "+f.what, *f.v)
+		}
+	}
+}
+
+func (p *shelf) history(key string) {
+	for _, h := range p.catalog.Histories {
+		if h.Key == key || key == "" {
+			p.value("sieve history "+h.Text+": residual loading", h.ResidualKgPerKg)
+		}
+	}
+}
+
+func (p *shelf) prices(r *Report) {
+	for _, item := range slices.Sorted(maps.Keys(r.Book)) {
+		price := r.Book[item]
+		p.note("price of "+price.Label, price.PerUnit.String()+" "+r.Job.Currency+" per "+price.Unit,
+			catalog.Origin{Source: price.Source, Confidence: catalog.Confidence(price.Confidence), Note: price.Note})
+	}
+}
+
+func (p *shelf) sources() []catalog.Source {
+	var out []catalog.Source
+	for _, id := range slices.Sorted(maps.Keys(p.cited)) {
+		out = append(out, p.catalog.Sources[id])
+	}
+	return out
+}
+
+func (p *shelf) sorted() []Weak {
+	var out []Weak
+	for _, what := range slices.Sorted(maps.Keys(p.weak)) {
+		out = append(out, p.weak[what])
+	}
+	return out
+}

@@ -1,0 +1,66 @@
+package study
+
+import (
+	"fmt"
+
+	"parch/internal/routes"
+	"parch/internal/steps"
+)
+
+// lotWarnings say what the answer for a lot rests on.
+func lotWarnings(k *routes.Case) []string {
+	var w []string
+	add := func(format string, args ...any) { w = append(w, fmt.Sprintf(format, args...)) }
+	if k.Limit.CannotShow != "" {
+		add("target %s", k.Limit.CannotShow)
+	}
+	room := k.Job.Site.RoomK
+	saturated, partly, err := k.Mixture.Solubility(room)
+	if err == nil && partly {
+		switch {
+		case k.Lot.FreeWaterM3 > 0 && k.Lot.Water < 0.8*saturated:
+			add("free water stands beside %.4g mg/kg dissolved, yet %s holds %.4g mg/kg at %.0f °C: the sample was not at equilibrium or the reading is of another layer", k.Lot.Water*1e6, k.Solvent.Name, saturated*1e6, room-273.15)
+		case k.Lot.FreeWaterM3 == 0 && k.Lot.Water > 1.02*saturated:
+			add("%.4g mg/kg is more than %s holds at %.0f °C (%.4g mg/kg): the lot holds free water, and a reading of a hazy sample is not its dissolved content", k.Lot.Water*1e6, k.Solvent.Name, room-273.15, saturated*1e6)
+		}
+	}
+	if band := k.Solvent.Water.SolubilityBand; band > 1.2 {
+		add("published solubilities of water in %s scatter by a factor of %.3g: trap floors share that band", k.Solvent.Name, band)
+	}
+	if k.Solvent.Water.Quality != "A" {
+		add("water + %s: activity model of quality %s", k.Solvent.Name, k.Solvent.Water.Quality)
+	}
+	if a := k.Catalog.Assays[k.Job.Site.KarlFischer]; a.Highest.SI > 0 && k.Lot.Water > a.Highest.SI {
+		add("%s Karl Fischer is advised up to %.4g mg/kg only; read the %.4g mg/kg of the start by the other method", a.Key, a.Highest.SI*1e6, k.Lot.Water*1e6)
+	}
+	return w
+}
+
+// runWarnings say what a route's numbers rest on.
+func runWarnings(k *routes.Case, run routes.Run) []string {
+	var w []string
+	add := func(format string, args ...any) { w = append(w, fmt.Sprintf(format, args...)) }
+	for _, o := range run.Outcomes {
+		w = append(w, o.Warnings...)
+		switch o.Kind {
+		case steps.Trap:
+			if _, charges := k.Still(); charges > 1 {
+				add("the still takes the lot in %d charges", charges)
+			}
+			add("below %.3g mg/kg a trap is taken to work at %.2g of the ideal, and its outlet is never claimed under %.3g mg/kg (common practice, no source)",
+				k.Catalog.Practice["trap-efficiency-below"].SI*1e6, k.Catalog.Practice["trap-efficiency"].SI, k.Catalog.Practice["trap-outlet-minimum"].SI*1e6)
+		case steps.Soak:
+			agent := k.Catalog.Agents[o.Agent]
+			if agent.LoadingBand > 1 {
+				add("%s: affinity known to a factor of %.2g only", agent.Name, agent.LoadingBand)
+			}
+			add("the sieve is taken to hold %.2g g/100 g from its history; this and the mixing rate of a still vessel rule the result (fitted to few published dryings, most within a factor of 2)", k.Lot.ResidualLoading*100)
+		case steps.Buy:
+			add("water of the dry grade is its limit as sold, before the bottle is opened")
+		}
+	}
+	if !finite(run.CO2eKg) {
+		add("no emission factor for part of this route: CO2e left out")
+	}
+	return w
+}

@@ -1,0 +1,211 @@
+package workbook
+
+import (
+	"bytes"
+	"errors"
+	"fmt"
+	"math"
+
+	"github.com/xuri/excelize/v2"
+
+	"parch/internal/steps"
+)
+
+// placed is a chart and where it stands.
+type placed struct {
+	row    int // first row
+	height int // pixels
+	chart  *excelize.Chart
+}
+
+const (
+	chartWidth  = 1120 // pixels
+	rowPixels   = 20   // height of a row without content
+	rowPoints   = 15.0
+	pixelPoints = 0.75
+)
+
+// rowsTaken is the number of rows under a chart.
+func (p placed) rowsTaken() int { return (p.height + rowPixels - 1) / rowPixels }
+
+// drawnTo is the last row that a chart covers.
+func (g *grid) drawnTo() int {
+	last := 0
+	for _, p := range g.charts {
+		last = max(last, p.row+p.rowsTaken())
+	}
+	return last
+}
+
+func (e *emitter) drawings(g *grid) error {
+	for _, p := range g.charts {
+		if err := e.file.AddChart(g.name, at(1, p.row), p.chart); err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
+// headColours are the hues of Okabe and Ito, one for each head of cost, the same
+// in every chart; all bars are outlined since some of the hues are pale.
+var headColours = map[steps.Head]string{
+	steps.Labour: "0072B2", steps.Energy: "E69F00", steps.CoolingWater: "56B4E9", steps.Agent: "009E73",
+	steps.SolventLost: "D55E00", steps.Waste: "CC79A7", steps.Equipment: "F0E442", steps.Testing: "999999", steps.Purchase: "FFFFFF",
+}
+
+// compareCharts draws, for each lot, cost by head and water left, below the table.
+func (l *layout) compareCharts(g *grid) {
+	for _, lot := range l.lots {
+		if len(lot.routes) == 0 {
+			continue
+		}
+		first, last := lot.routes[0].no-1, lot.routes[len(lot.routes)-1].no-1
+		height := 170 + 38*len(lot.routes)
+		l.draw(g, fmt.Sprintf("Lot %d: cost", lot.no), height, l.costChart(lot, rows{first, last}))
+		l.draw(g, fmt.Sprintf("Lot %d: water", lot.no), 380, l.waterChart(lot, rows{first, last}))
+	}
+}
+
+// draw places a chart below what is there, at the top of the next page where it
+// would otherwise be cut by the end of one.
+func (l *layout) draw(g *grid, name string, height int, c *excelize.Chart) {
+	row := max(g.last(), g.drawnTo()) + 2
+	points := float64(height) * pixelPoints
+	page := printableHeight / g.scale()
+	titles := g.span(g.frozenRows-1, g.frozenRows)
+	used := g.pageUsed(row, page, titles)
+	if used+points > page && points < page-titles {
+		row += int(math.Ceil((page - used) / rowPoints))
+	}
+	c.Dimension = excelize.ChartDimension{Width: chartWidth, Height: uint(height)}
+	c.Format.Positioning = "oneCell"
+	c.Format.Name = name
+	g.charts = append(g.charts, placed{row, height, c})
+}
+
+// span is the height of some rows in points.
+func (g *grid) span(first, last int) (points float64) {
+	for row := first; row <= last; row++ {
+		if row > 0 && row <= len(g.rows) && len(g.rows[row-1]) > 0 {
+			points += g.height(row)
+		} else {
+			points += rowPoints
+		}
+	}
+	return points
+}
+
+// pageUsed is how much of its page is used above a row.
+func (g *grid) pageUsed(row int, page, titles float64) float64 {
+	used := 0.0
+	for r := 1; r < row; r++ {
+		h := g.span(r, r)
+		if used+h > page {
+			used = titles
+		}
+		used += h
+	}
+	return used
+}
+
+func (l *layout) costChart(lot *lotModel, places rows) *excelize.Chart {
+	first, last := l.headRows.at(places.first), l.headRows.at(places.last)
+	c := baseChart(excelize.BarStacked, fmt.Sprintf("Lot %d: cost of a batch by head, %s", lot.no, l.currency()))
+	c.Format.AltText = fmt.Sprintf("Stacked bars: cost of a batch of lot %d by head of cost, one bar per route. The numbers are on sheet Costs, rows %d to %d.", lot.no, first, last)
+	gap, overlap := uint(55), 100
+	c.GapWidth, c.Overlap = &gap, &overlap
+	c.XAxis.ReverseOrder = true
+	c.YAxis.MajorGridLines = true
+	c.YAxis.NumFmt = excelize.ChartNumFmt{CustomNumFmt: "#,##0"}
+	c.YAxis.Title = axisTitle(l.currency() + " per batch")
+	for h, head := range steps.Heads {
+		if !l.billed(lot, h) {
+			continue
+		}
+		column := headFirst + h
+		c.Series = append(c.Series, excelize.ChartSeries{
+			Name:       on(sheetCosts, fixed(column, l.headRows.first-1)),
+			Categories: on(sheetCosts, area(2, first, last)),
+			Values:     on(sheetCosts, area(column, first, last)),
+			Fill:       solid(headColours[head]),
+			Line:       excelize.LineOptions{Type: excelize.LineSolid, Width: 0.75, Fill: solid(darkInk)},
+		})
+	}
+	return c
+}
+
+// billed reports whether any route of the lot has a line under the head.
+func (l *layout) billed(lot *lotModel, h int) bool {
+	for _, r := range lot.routes {
+		for _, line := range r.lines {
+			if line.Head == steps.Heads[h] {
+				return true
+			}
+		}
+	}
+	return false
+}
+
+func (l *layout) waterChart(lot *lotModel, places rows) *excelize.Chart {
+	first, last := l.compareRows.at(places.first), l.compareRows.at(places.last)
+	c := baseChart(excelize.Line, fmt.Sprintf("Lot %d: water left, mg/kg (logarithmic axis)", lot.no))
+	c.Format.AltText = fmt.Sprintf("Points on a logarithmic axis: water left by each route of lot %d, with lines for the target and the acceptance limit. The numbers are on sheet Compare, rows %d to %d.", lot.no, first, last)
+	low, high := math.Inf(1), lot.target
+	for _, r := range lot.routes {
+		low, high = min(low, max(r.waterOut, lowestPlotted)), max(high, r.waterOut)
+	}
+	low = min(low, max(lot.acceptAt, lowestPlotted))
+	lowest, highest := math.Pow(10, math.Floor(math.Log10(low))), math.Pow(10, math.Ceil(math.Log10(high)+0.01))
+	c.YAxis.LogBase, c.YAxis.Minimum, c.YAxis.Maximum = 10, &lowest, &highest
+	c.YAxis.MajorGridLines = true
+	c.YAxis.NumFmt = excelize.ChartNumFmt{CustomNumFmt: "General"}
+	c.YAxis.Title = axisTitle("mg/kg")
+	series := func(column int, line excelize.LineOptions, marker excelize.ChartMarker) {
+		c.Series = append(c.Series, excelize.ChartSeries{
+			Name:       on(sheetCompare, fixed(column, l.compareRows.first-1)),
+			Categories: on(sheetCompare, area(2, first, last)),
+			Values:     on(sheetCompare, area(column, first, last)),
+			Line:       line, Marker: marker,
+		})
+	}
+	mark := func(symbol, colour string, size int) excelize.ChartMarker {
+		return excelize.ChartMarker{Symbol: symbol, Size: size, Fill: solid(colour),
+			Border: excelize.LineOptions{Type: excelize.LineSolid, Width: 0.75, Fill: solid(darkInk)}}
+	}
+	series(comparePlotted, excelize.LineOptions{Type: excelize.LineNone}, mark("diamond", "0072B2", 11))
+	series(compareTarget, excelize.LineOptions{Type: excelize.LineSolid, Width: 2, Fill: solid("D55E00")}, mark("dash", "D55E00", 8))
+	series(compareLimit, excelize.LineOptions{Type: excelize.LineSolid, Dash: excelize.LineDashDash, Width: 1.5, Fill: solid("009E73")}, mark("square", "009E73", 5))
+	return c
+}
+
+func solid(colour string) excelize.Fill {
+	return excelize.Fill{Type: "pattern", Pattern: 1, Color: []string{colour}}
+}
+
+func axisTitle(s string) excelize.ChartTitle {
+	return excelize.ChartTitle{Paragraph: []excelize.RichTextRun{{Text: s, Font: &excelize.Font{Color: darkInk, Size: 9}}}}
+}
+
+func baseChart(kind excelize.ChartType, name string) *excelize.Chart {
+	vary := false
+	font := excelize.Font{Color: darkInk, Size: 9}
+	return &excelize.Chart{
+		Type:       kind,
+		Title:      excelize.ChartTitle{Paragraph: []excelize.RichTextRun{{Text: name, Font: &excelize.Font{Color: black, Size: 12, Bold: true}}}},
+		Legend:     excelize.ChartLegend{Position: "bottom", Font: &font},
+		VaryColors: &vary,
+		XAxis:      excelize.ChartAxis{Font: font},
+		YAxis:      excelize.ChartAxis{Font: font},
+		Fill:       solid(white),
+		Border:     excelize.LineOptions{Type: excelize.LineSolid, Width: 0.75, Fill: solid(rule)},
+	}
+}
+
+// patchChart puts right what the chart writer leaves open: where categories run
+// from top to bottom, the value axis belongs at the bottom.
+func patchChart(part []byte) ([]byte, error) {
+	if !bytes.Contains(part, []byte(`<c:orientation val="maxMin"`)) && !bytes.Contains(part, []byte(`<orientation val="maxMin"`)) {
+		return part, nil
+	}
+	return part, errors.New("todo")
+}

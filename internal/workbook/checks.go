@@ -1,0 +1,209 @@
+package workbook
+
+import (
+	"fmt"
+)
+
+var checkColumns = []column{{name: "No"}, {name: "Check"}, {name: "Found"}, {name: "Expected"}, {name: "Difference"}, {name: "Tolerance"},
+	{name: "Unit"}, {name: "Flag"}, {name: "Result"}}
+
+const (
+	moneyTolerance   = 0.005
+	balanceTolerance = 1e-6
+)
+
+// test is one check: found and expected must agree within the tolerance.
+type test struct {
+	what            string
+	found, expected cell
+	tolerance       float64
+	unit            string
+}
+
+func (l *layout) checks() *grid {
+	g := newGrid(sheetChecks, "Found and expected must agree within the tolerance. The sum of the flags is 0 when all checks hold.",
+		tabCheck, cell{look: message, formula: "check_message", value: checksHold}, 10, 74, 15, 15, 15, 12, 12, 8, 15)
+	first := frameRows + 7
+	g.table(first-2, "Always checked", checkColumns)
+	g.frozenRows = first - 1
+	always := l.testRows(g, first, l.alwaysTests(), "IFERROR((ABS(E%[1]d)>F%[1]d)*1,1)", `IF(H%[1]d>0,"fails","holds")`)
+	next := g.table(g.next(), "Checked against the program while no input and no price is edited", checkColumns)
+	unedited := l.testRows(g, next, l.programTests(), "IFERROR((edited_inputs=0)*(ABS(E%[1]d)>F%[1]d),1)",
+		fmt.Sprintf(`IF(H%%[1]d>0,"fails",%s)`, fixed(3, frameRows+3)))
+	l.masterRows(g, always, unedited)
+	for _, r := range []rows{always, unedited} {
+		if r.empty() {
+			continue
+		}
+		place := fmt.Sprintf("I%d:I%d", r.first, r.last)
+		g.flags = append(g.flags, flag{place, fmt.Sprintf(`$I%d="fails"`, r.first), fail}, flag{place, fmt.Sprintf(`$I%d="holds"`, r.first), pass},
+			flag{place, fmt.Sprintf(`$I%d="not compared"`, r.first), warn})
+	}
+	return g
+}
+
+func (l *layout) masterRows(g *grid, always, unedited rows) {
+	total, edited, compared, say := frameRows+1, frameRows+2, frameRows+3, frameRows+4
+	row := func(r int, name, what string, c cell) {
+		g.put(1, r, text(plain, name))
+		g.put(2, r, text(words, what))
+		g.put(3, r, c)
+	}
+	sum := "0"
+	for _, r := range []rows{always, unedited} {
+		if !r.empty() {
+			sum += fmt.Sprintf("+SUM(H%d:H%d)", r.first, r.last)
+		}
+	}
+	count := func(sheet string, r rows) string {
+		if r.empty() {
+			return "0"
+		}
+		value, run := on(sheet, r.column(colValue)), on(sheet, r.column(colRun))
+		return fmt.Sprintf(`SUMPRODUCT((%s<>%s)*(%s<>""))`, value, run, run)
+	}
+	row(total, "", "Sum of all flags: 0 when all checks hold", derived(sum, 0.0).shown("0"))
+	row(edited, "", "Inputs and prices that differ from the run", derived(count(sheetInputs, l.inputRows)+"+"+count(sheetPrices, l.priceRows), 0.0).shown("0"))
+	row(compared, "", "Comparison with the program", derived(fmt.Sprintf(`IF(%s=0,"holds","not compared")`, fixed(3, edited)), "holds"))
+	row(say, "", "Shown at the top of every sheet", derived(fmt.Sprintf(`IF(%s=0,"%s","See Checks")&IF(%s,". Run parch again","")`, fixed(3, total), checksHold, l.rerun()), checksHold))
+	l.name("check_total", sheetChecks, 3, total)
+	l.name("edited_inputs", sheetChecks, 3, edited)
+	l.name("check_message", sheetChecks, 3, say)
+}
+
+// rerun holds while an input is edited that only the program can follow.
+func (l *layout) rerun() string {
+	return fmt.Sprintf(`COUNTIF(%s,"%s")>0`, on(sheetInputs, l.inputRows.column(colState)), runAgain)
+}
+
+func (l *layout) testRows(g *grid, first int, tests []test, flagFormula, wordFormula string) rows {
+	for i, t := range tests {
+		row := first + i
+		found, _ := t.found.value.(float64)
+		expected, _ := t.expected.value.(float64)
+		g.putRow(row, count(i+1), text(words, t.what), t.found.in(t.unit), t.expected.in(t.unit),
+			derived(fmt.Sprintf("C%d-D%d", row, row), found-expected).in(t.unit).shown("0.0E+00"),
+			number(t.tolerance, t.unit).shown("0.0E+00"), text(plain, t.unit),
+			derived(fmt.Sprintf(flagFormula, row), 0.0).shown("0"), derived(fmt.Sprintf(wordFormula, row), "holds"))
+	}
+	if len(tests) == 0 {
+		g.put(1, first, text(plain, "Nothing to check."))
+	}
+	return rows{first, first + len(tests) - 1}
+}
+
+// none is the expected value of a check that counts faults.
+func none() cell { return count(0) }
+
+func (l *layout) alwaysTests() []test {
+	tests := l.inputTests()
+	tests = append(tests, l.errorTests()...)
+	if len(l.routes) == 0 {
+		return tests
+	}
+	tests = append(tests, l.billTests()...)
+	tests = append(tests, l.balanceTests()...)
+	return append(tests, l.rankTests()...)
+}
+
+func (l *layout) inputTests() []test {
+	values, runs := on(sheetInputs, l.inputRows.column(colValue)), on(sheetInputs, l.inputRows.column(colRun))
+	states := on(sheetInputs, l.inputRows.column(colState))
+	tests := []test{
+		{"Edited inputs that only the program can follow", derived(fmt.Sprintf(`COUNTIF(%s,"%s")`, states, runAgain), 0.0).shown("0"), none(), 0, "cells"},
+		{"Inputs that should be numbers and are not", derived(fmt.Sprintf("SUMPRODUCT(ISNUMBER(%s)*NOT(ISNUMBER(%s)))", runs, values), 0.0).shown("0"), none(), 0, "cells"},
+	}
+	if l.priceRows.empty() {
+		return tests
+	}
+	prices := on(sheetPrices, l.priceRows.column(colValue))
+	tests = append(tests,
+		test{"Prices that are not numbers", derived(fmt.Sprintf("ROWS(%s)-COUNT(%s)", prices, prices), 0.0).shown("0"), none(), 0, "cells"},
+		test{"Prices below zero", derived(fmt.Sprintf("SUMPRODUCT((%s<0)*1)", prices), 0.0).shown("0"), none(), 0, "cells"})
+	if !l.lineRows.empty() {
+		items := on(sheetCosts, l.lineRows.column(billItem))
+		known := on(sheetPrices, l.priceRows.column(colName))
+		tests = append(tests, test{"Items of the bill without a price",
+			derived(fmt.Sprintf("SUMPRODUCT(ISNA(MATCH(%s,%s,0))*1)", items, known), 0.0).shown("0"), none(), 0, "lines"})
+	}
+	return tests
+}
+
+func (l *layout) errorTests() (tests []test) {
+	for _, g := range l.grids {
+		place := on(g.name, fixed(1, frameRows+1)+":"+fixed(len(g.widths), g.last()))
+		tests = append(tests, test{"Error cells on " + g.name, derived(fmt.Sprintf("SUMPRODUCT(ISERROR(%s)*1)", place), 0.0).shown("0"), none(), 0, "cells"})
+	}
+	return tests
+}
+
+func (l *layout) billTests() []test {
+	money := l.currency()
+	bill := func(c int) string { return on(sheetCosts, l.lineRows.column(c)) }
+	heads := on(sheetCosts, fixed(headFirst, l.headRows.first)+":"+fixed(headFirst+8, l.headRows.last))
+	headSums := on(sheetCosts, l.headRows.column(headFirst+9))
+	totals := on(sheetCosts, l.litreRows.column(litreTotal))
+	shown := on(sheetCompare, l.compareRows.column(compareBatch))
+	all := 0.0
+	for _, r := range l.routes {
+		all += r.total
+	}
+	sum := func(f string) cell { return derived(f, all).shown(moneyFormat) }
+	tests := []test{
+		{"Amounts: quantity × price", sum("SUM(" + bill(billAmount) + ")"), sum(fmt.Sprintf("SUMPRODUCT(%s,%s)", bill(billBatch), bill(billPrice))), moneyTolerance, money},
+		{"All lines of the bills and all heads", sum("SUM(" + heads + ")"), sum("SUM(" + bill(billAmount) + ")"), moneyTolerance, money},
+		{"Heads and cost per batch, route by route: differences added up", derived(fmt.Sprintf("SUMPRODUCT(ABS(%s-%s))", headSums, totals), 0.0).shown("0.000"), none(), moneyTolerance, money},
+		{"Cost per batch on Compare and on Costs", sum("SUM(" + shown + ")"), sum("SUM(" + totals + ")"), moneyTolerance, money},
+	}
+	delivered := on(sheetCosts, l.litreRows.column(litreDelivered))
+	return append(tests, test{"Routes that deliver nothing", derived(fmt.Sprintf("SUMPRODUCT((%s<=0)*1)", delivered), 0.0).shown("0"), none(), 0, "routes"})
+}
+
+func (l *layout) balanceTests() []test {
+	open := func(what string, column int) test {
+		place := on(sheetSteps, l.stepRows.column(column))
+		return test{what, derived(fmt.Sprintf("SUMPRODUCT(ABS(%s))", place), 0.0).shown("0.0E+00"), none(), balanceTolerance, "kg"}
+	}
+	return []test{open("Water left open in the balances of all steps", 8), open("Solvent left open in the balances of all steps", 12)}
+}
+
+func (l *layout) rankTests() (tests []test) {
+	place := func(c int) string { return on(sheetCosts, l.rankRows.column(c)) }
+	for _, lot := range l.lots {
+		if len(lot.routes) == 0 {
+			continue
+		}
+		no := on(sheetCosts, at(rankLot, l.rankRows.at(lot.routes[0].no-1)))
+		ranked := 0.0
+		for _, r := range lot.routes {
+			if r.rank > 0 {
+				ranked++
+			}
+		}
+		ranks, lots, contest := place(rankPlace), place(rankLot), place(rankContest)
+		reach := derived(fmt.Sprintf("COUNTIF(%s,%s)", contest, no), ranked).shown("0")
+		worst := derived(fmt.Sprintf("SUMPRODUCT(MAX((%s=%s)*%s))", lots, no, ranks), ranked).shown("0")
+		different := derived(fmt.Sprintf("SUMPRODUCT((%s=%s)/COUNTIFS(%s,%s,%s,%s))", contest, no, contest, contest, ranks, ranks), ranked).shown("0")
+		name := fmt.Sprintf("Lot %d: ", lot.no)
+		tests = append(tests,
+			test{name + "last rank and number of routes that reach the target", worst, reach, 0, "routes"},
+			test{name + "different ranks and number of routes that reach the target", different, reach, balanceTolerance, "routes"})
+	}
+	return tests
+}
+
+// programTests compare the sheet with what the program computed by itself.
+func (l *layout) programTests() (tests []test) {
+	for i, r := range l.routes {
+		litre, rank := l.litreRows.at(i), l.rankRows.at(i)
+		name := fmt.Sprintf("Route %d, %s: ", r.no, r.ID)
+		tests = append(tests,
+			test{name + "cost per batch", derived(on(sheetCosts, at(litreTotal, litre)), r.total).shown(moneyFormat),
+				number(float(r.Bill.PerBatch), l.currency()).shown(moneyFormat), moneyTolerance, l.currency()},
+			test{name + "cost per litre", derived(on(sheetCosts, at(litreCost, litre)), r.perLitre).shown(moneyFormat),
+				number(float(r.Bill.PerLitre), l.money("L")).shown(moneyFormat), moneyTolerance, l.money("L")},
+			test{name + "rank, 0 where the target is missed", derived(on(sheetCosts, at(rankPlace, rank)), float64(r.rank)).shown("0"),
+				count(r.Rank), 0, "1"})
+	}
+	return tests
+}

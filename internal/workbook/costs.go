@@ -1,0 +1,193 @@
+package workbook
+
+import (
+	"fmt"
+
+	"parch/internal/steps"
+)
+
+// Columns of the bill.
+const (
+	billHead    = 4
+	billStep    = 5
+	billItem    = 6
+	billQty     = 7
+	billUnit    = 8
+	billPer     = 9
+	billShared  = 10
+	billBatch   = 11
+	billPrice   = 12
+	billAmount  = 13
+	billPerUnit = 14
+	billBasis   = 15
+)
+
+// Columns of the blocks below the bill.
+const (
+	headFirst = 4
+
+	litreTotal     = 4
+	litreDelivered = 5
+	litreCost      = 6 // this and the next three are the objectives, in their order
+	litreHours     = 7
+	litreWaste     = 8
+	litreEnergy    = 9
+	litreBatches   = 10
+	litreYear      = 11
+
+	rankLot       = 3
+	rankWater     = 4
+	rankLimit     = 5
+	rankCanShow   = 6
+	rankReaches   = 7
+	rankContest   = 8
+	rankObjective = 9
+	rankOrder     = 10
+	rankAhead     = 11 // three columns
+	rankPlace     = 14
+)
+
+var headNames = map[steps.Head]string{
+	steps.Labour: "Labour", steps.Energy: "Energy", steps.CoolingWater: "Cooling water", steps.Agent: "Agent",
+	steps.SolventLost: "Solvent lost", steps.Waste: "Waste", steps.Equipment: "Equipment", steps.Testing: "Testing", steps.Purchase: "Purchase",
+}
+
+func (l *layout) costs() *grid {
+	g := newGrid(sheetCosts, "The bill of each route: quantity × price = amount, for one batch. Below the lines: cost by head, cost per litre, target and rank. Nothing is rounded, only shown to the cent.",
+		tabWork, checkCell(), 20, 30, 9, 13, 10, 17, 11, 11, 11, 11, 11, 11, 11, 11, 52)
+	l.billBlock(g)
+	l.headBlock(g)
+	l.litreBlock(g)
+	l.rankBlock(g)
+	g.putRow(frameRows+1, text(link, "Cost by head").linkTo(on(sheetCosts, at(1, l.headRows.first-2))),
+		text(link, "Cost per litre and per year").linkTo(on(sheetCosts, at(1, l.litreRows.first-2))))
+	g.put(4, frameRows+1, text(link, "Target and rank").linkTo(on(sheetCosts, at(1, l.rankRows.first-2))))
+	return g
+}
+
+func (l *layout) billBlock(g *grid) {
+	first := g.table(frameRows+2, "Lines of the bill", []column{{name: "Lot"}, {name: "Route id"}, {name: "Route no"}, {name: "Head"}, {name: "Step"},
+		{name: "Item"}, {name: "Quantity"}, {name: "Unit"}, {name: "Counted per"}, {"Shared by", "batches"}, {name: "Quantity per batch"},
+		{name: "Unit price"}, {"Amount", l.currency()}, {name: "Unit of the price"}, {name: "Basis"}})
+	g.frozenRows, g.frozenColumns = first-1, 2
+	row := first
+	for _, r := range l.routes {
+		for _, line := range r.lines {
+			l.billRow(g, row, r, line)
+			row++
+		}
+	}
+	l.lineRows = rows{first, row - 1}
+	l.noRoutes(g, first, row-first)
+}
+
+func (l *layout) billRow(g *grid, row int, r *routeModel, line lineModel) {
+	per := "batch"
+	if line.perYear {
+		per = "year"
+	}
+	quantity := decimals(mostDecimals)
+	g.putRow(row, append(l.routeKey(r),
+		text(plain, headNames[line.Head]), count(line.Step), text(words, line.Item),
+		number(line.quantity, line.Unit).shown(quantity), text(plain, line.Unit), text(plain, per),
+		derived(fmt.Sprintf(`IF(%s="year",%s,1)`, at(billPer, row), l.lotName(r.lot, "batches_per_year")), line.shared).shown(formatFor(line.shared)),
+		derived(at(billQty, row)+"/"+at(billShared, row), line.perBatch).in(line.Unit).shown(quantity),
+		derived(priceName(line.Item, line.Unit), line.price).in(l.money(line.Unit)).shown("#,##0.00##"),
+		derived(at(billBatch, row)+"*"+at(billPrice, row), line.amount).in(l.currency()).shown(moneyFormat),
+		text(plain, l.money(line.Unit)), text(words, line.Basis))...)
+}
+
+func (l *layout) headBlock(g *grid) {
+	columns := []column{{name: "Lot"}, {name: "Route id"}, {name: "Route no"}}
+	for _, h := range steps.Heads {
+		columns = append(columns, column{name: headNames[h]})
+	}
+	columns = append(columns, column{name: "Sum of heads"})
+	first := g.table(g.next(), "Cost of a batch by head, "+l.currency(), columns)
+	l.headRows = rows{first, first + len(l.routes) - 1}
+	amounts, routeNos, heads := l.lineRows.column(billAmount), l.lineRows.column(3), l.lineRows.column(billHead)
+	sum := headFirst + len(steps.Heads)
+	for i, r := range l.routes {
+		row := first + i
+		g.putRow(row, l.routeKey(r)...)
+		for h := range steps.Heads {
+			column := headFirst + h
+			f := fmt.Sprintf("SUMIFS(%s,%s,$C%d,%s,%s$%d)", amounts, routeNos, row, heads, columnName(column), first-1)
+			g.put(column, row, derived(f, r.heads[h]).in(l.currency()).shown(moneyFormat))
+		}
+		f := fmt.Sprintf("SUM(%s:%s)", at(headFirst, row), at(sum-1, row))
+		g.put(sum, row, derived(f, r.headSum).in(l.currency()).shown(moneyFormat))
+	}
+	l.noRoutes(g, first, len(l.routes))
+}
+
+func (l *layout) litreBlock(g *grid) {
+	first := g.table(g.next(), "Cost per litre and per year", []column{{name: "Lot"}, {name: "Route id"}, {name: "Route no"},
+		{"Cost per batch", l.currency()}, {"Litres delivered", "L"}, {"Cost per litre", l.money("L")}, {"Hours total", "h"}, {"Waste", "kg"},
+		{"Energy", "kWh"}, {"Batches per year", "1/yr"}, {"Cost per year", l.currency()}})
+	l.litreRows = rows{first, first + len(l.routes) - 1}
+	amounts, routeNos := l.lineRows.column(billAmount), l.lineRows.column(3)
+	for i, r := range l.routes {
+		row, result := first+i, l.resultRows.at(i)
+		from := func(column int, v float64, unit string, d int) cell {
+			return derived(on(sheetSteps, at(column, result)), v).in(unit).shown(decimals(d))
+		}
+		g.putRow(row, append(l.routeKey(r),
+			derived(fmt.Sprintf("SUMIFS(%s,%s,C%d)", amounts, routeNos, row), r.total).in(l.currency()).shown(moneyFormat),
+			from(resultDelivered, r.litres, "L", 3),
+			derived(at(litreTotal, row)+"/"+at(litreDelivered, row), r.perLitre).in(l.money("L")).shown(moneyFormat),
+			from(resultHours, r.values[1], "h", 2), from(resultWaste, r.values[2], "kg", 3), from(resultEnergy, r.values[3], "kWh", 2),
+			derived(l.lotName(r.lot, "batches_per_year"), r.lot.batches).in("1/yr").shown(formatFor(r.lot.batches)),
+			derived(at(litreTotal, row)+"*"+at(litreBatches, row), r.perYear).in(l.currency()).shown(moneyFormat))...)
+	}
+	l.noRoutes(g, first, len(l.routes))
+}
+
+func (l *layout) rankBlock(g *grid) {
+	first := g.table(g.next(), "Target and rank: routes of a lot that reach the target, by objective, then cost per litre, then route id", []column{
+		{name: "Lot"}, {name: "Route id"}, {name: "Lot no"}, {"Water out", "mg/kg"}, {"Acceptance limit", "mg/kg"}, {name: "Target can be shown"},
+		{name: "Reaches target"}, {name: "Ranked in lot no"}, {name: "Objective value"}, {name: "Order of the route id"}, {name: "Ahead by objective"},
+		{name: "Level, ahead by cost"}, {name: "Level, ahead by id"}, {name: "Rank, 0 for none"}})
+	l.rankRows = rows{first, first + len(l.routes) - 1}
+	water := l.waterFormat()
+	for i, r := range l.routes {
+		row, litre := first+i, l.litreRows.at(i)
+		g.putRow(row, text(words, r.lot.Job.Name), text(words, r.ID), count(r.lot.no),
+			derived(on(sheetSteps, at(resultWater, l.resultRows.at(i))), r.waterOut).in("mg/kg").shown(water),
+			derived(l.lotName(r.lot, "accept_limit"), r.lot.acceptAt).in("mg/kg").shown(water),
+			derived(l.lotName(r.lot, "can_show"), yesNo(r.lot.shown)),
+			derived(fmt.Sprintf(`IF(AND(D%d<=E%d+job_water_tolerance,F%d="yes"),"yes","no")`, row, row, row), yesNo(r.reaches)),
+			derived(fmt.Sprintf(`IF(G%d="yes",C%d,0)`, row, row), r.contest()).shown("0"),
+			derived(fmt.Sprintf("INDEX(F%d:I%d,MATCH(job_objective,%s,0))", litre, litre, on(sheetInputs, l.objectiveList.column(colValue))), r.objective).shown("#,##0.00##"),
+			count(r.order))
+		l.aheadCells(g, row, litre, r)
+	}
+	l.noRoutes(g, first, len(l.routes))
+}
+
+func (r *routeModel) contest() float64 {
+	if r.reaches {
+		return float64(r.lot.no)
+	}
+	return 0
+}
+
+// aheadCells count the routes that come before this one: by the objective; level
+// in it, by cost per litre; level in both, by the id.
+func (l *layout) aheadCells(g *grid, row, litre int, r *routeModel) {
+	in := func(rr rows, column int) string {
+		return fmt.Sprintf("%s$%d:%s$%d", columnName(column), rr.first, columnName(column), rr.last)
+	}
+	same := fmt.Sprintf("(%s=C%d)", in(l.rankRows, rankContest), row)
+	objective, cost := in(l.rankRows, rankObjective), in(l.litreRows, litreCost)
+	level := fmt.Sprintf("(ABS(%s-I%d)<=job_tie)", objective, row)
+	ahead := []string{
+		fmt.Sprintf("SUMPRODUCT(%s*(%s<I%d-job_tie))", same, objective, row),
+		fmt.Sprintf("SUMPRODUCT(%s*%s*(%s<F%d-job_tie))", same, level, cost, litre),
+		fmt.Sprintf("SUMPRODUCT(%s*%s*(ABS(%s-F%d)<=job_tie)*(%s<J%d))", same, level, cost, litre, in(l.rankRows, rankOrder), row),
+	}
+	for i, f := range ahead {
+		g.put(rankAhead+i, row, derived(f, float64(r.ahead[i])).shown("0"))
+	}
+	g.put(rankPlace, row, derived(fmt.Sprintf(`IF(G%d="yes",1+K%d+L%d+M%d,0)`, row, row, row, row), float64(r.rank)).shown("0"))
+}

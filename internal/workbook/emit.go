@@ -1,0 +1,270 @@
+package workbook
+
+import (
+	"bytes"
+	"errors"
+	"fmt"
+	"io"
+	"math"
+	"regexp"
+	"strings"
+	"time"
+	"unicode/utf8"
+
+	"github.com/xuri/excelize/v2"
+)
+
+// definedName is a name for one cell.
+type definedName struct{ name, place string }
+
+// validName is a name that no reader takes for a cell: lower case words joined by
+// underscores.
+var validName = regexp.MustCompile(`^[a-z][a-z0-9]*(_[a-z0-9]+)+$`)
+
+// file is a workbook ready to be written.
+type file struct {
+	title, created string // created is an ISO date
+	grids          []*grid
+	names          []definedName
+}
+
+// write checks everything, then writes the package.
+func (w *file) write(out io.Writer) (err error) {
+	if err := w.check(); err != nil {
+		return err
+	}
+	f := excelize.NewFile()
+	defer func() { err = errors.Join(err, f.Close()) }()
+	f.SetZipWriter(func(out io.Writer) excelize.ZipWriter {
+		return &parts{out: out, content: map[string]*bytes.Buffer{}, patch: patchPart}
+	})
+	if err := w.prepare(f); err != nil {
+		return err
+	}
+	e := emitter{file: f, styles: map[styled]int{}, overlays: map[look]int{}}
+	for _, g := range w.grids {
+		if err := e.sheet(g); err != nil {
+			return fmt.Errorf("sheet %s: %w", g.name, err)
+		}
+	}
+	return f.Write(out)
+}
+
+func (w *file) check() error {
+	if _, err := time.Parse(time.DateOnly, w.created); err != nil {
+		return fmt.Errorf("date of the catalog: %q is not a date like 2026-12-01", w.created)
+	}
+	seen := map[string]bool{}
+	var problems []error
+	for _, n := range w.names {
+		if !validName.MatchString(n.name) {
+			problems = append(problems, fmt.Errorf("%q cannot be the name of a cell", n.name))
+		}
+		if seen[n.name] {
+			problems = append(problems, fmt.Errorf("two cells would have the name %s", n.name))
+		}
+		seen[n.name] = true
+	}
+	for _, g := range w.grids {
+		problems = append(problems, g.check())
+	}
+	return errors.Join(problems...)
+}
+
+func (w *file) prepare(f *excelize.File) error {
+	for i, g := range w.grids {
+		if i == 0 {
+			if err := f.SetSheetName("Sheet1", g.name); err != nil {
+				return err
+			}
+			continue
+		}
+		if _, err := f.NewSheet(g.name); err != nil {
+			return err
+		}
+	}
+	for _, n := range w.names {
+		if err := f.SetDefinedName(&excelize.DefinedName{Name: n.name, RefersTo: n.place}); err != nil {
+			return fmt.Errorf("name %s: %w", n.name, err)
+		}
+	}
+	stamp := w.created + "T00:00:00Z"
+	if err := f.SetDocProps(&excelize.DocProperties{Creator: "parch", LastModifiedBy: "parch", Title: clean(w.title),
+		Created: stamp, Modified: stamp}); err != nil {
+		return err
+	}
+	if err := f.SetAppProps(&excelize.AppProperties{Application: "parch"}); err != nil {
+		return err
+	}
+	full := true
+	return f.SetCalcProps(&excelize.CalcPropsOptions{FullCalcOnLoad: &full})
+}
+
+// emitter writes grids and keeps the styles that they share.
+type emitter struct {
+	file     *excelize.File
+	styles   map[styled]int
+	overlays map[look]int
+}
+
+func (e *emitter) sheet(g *grid) error {
+	sw, err := e.file.NewStreamWriter(g.name)
+	if err != nil {
+		return err
+	}
+	for i, width := range g.widths {
+		if err := sw.SetColWidth(i+1, i+1, width); err != nil {
+			return err
+		}
+	}
+	if g.frozenRows > 0 {
+		if err := sw.SetPanes(panes(g)); err != nil {
+			return err
+		}
+	}
+	for i, row := range g.rows {
+		if err := e.row(sw, g, i+1, row); err != nil {
+			return err
+		}
+	}
+	for _, step := range []func(*grid) error{e.links, e.conditions, e.validations, e.drawings, e.page, e.protect} {
+		if err := step(g); err != nil {
+			return err
+		}
+	}
+	return sw.Flush()
+}
+
+func panes(g *grid) *excelize.Panes {
+	corner := at(g.frozenColumns+1, g.frozenRows+1)
+	p := &excelize.Panes{Freeze: true, XSplit: g.frozenColumns, YSplit: g.frozenRows, TopLeftCell: corner, ActivePane: "bottomLeft"}
+	if g.frozenColumns > 0 {
+		p.ActivePane = "bottomRight"
+	}
+	p.Selection = []excelize.Selection{{SQRef: corner, ActiveCell: corner, Pane: p.ActivePane}}
+	return p
+}
+
+func (e *emitter) row(sw *excelize.StreamWriter, g *grid, row int, cells []cell) error {
+	values := make([]any, len(cells))
+	for i, c := range cells {
+		if c == (cell{}) {
+			continue
+		}
+		id, err := e.style(styled{c.look, c.format, c.isNumber()})
+		if err != nil {
+			return err
+		}
+		value := c.value
+		if s, ok := value.(string); ok {
+			value = clean(s)
+		}
+		values[i] = excelize.Cell{StyleID: id, Formula: c.formula, Value: value}
+	}
+	return sw.SetRow(at(1, row), values, excelize.RowOpts{Height: g.height(row)})
+}
+
+func (e *emitter) style(s styled) (int, error) {
+	if id, ok := e.styles[s]; ok {
+		return id, nil
+	}
+	id, err := e.file.NewStyle(s.style())
+	e.styles[s] = id
+	return id, err
+}
+
+const (
+	lineHeight   = 13.5 // points
+	tallest      = 400  // points, below the limit of a row
+	charsPerUnit = 1.05 // characters of text that fit in a unit of column width
+)
+
+// height gives a row room for its wrapped text.
+func (g *grid) height(row int) float64 {
+	if h, ok := g.heights[row]; ok {
+		return h
+	}
+	lines, size := 1, 10.0
+	for i, c := range g.rows[row-1] {
+		p := paints[c.look]
+		size = max(size, p.size)
+		if s, ok := c.value.(string); ok && p.wrap && i < len(g.widths) {
+			lines = max(lines, wrapped(s, g.widths[i]*charsPerUnit))
+		}
+	}
+	return min(tallest, float64(lines)*lineHeight*size/10+1.5)
+}
+
+// wrapped counts the lines of a text in a column of the given characters.
+func wrapped(s string, width float64) int {
+	lines := 0
+	for _, paragraph := range strings.Split(s, "\n") {
+		used := 0.0
+		lines++
+		for _, word := range strings.Fields(paragraph) {
+			n := float64(utf8.RuneCountInString(word))
+			switch {
+			case n > width:
+				lines += int(math.Ceil((used+n)/width)) - 1
+				used = math.Mod(used+n, width) + 1
+			case used+n > width:
+				lines++
+				used = n + 1
+			default:
+				used += n + 1
+			}
+		}
+	}
+	return lines
+}
+
+func (e *emitter) links(g *grid) error {
+	for r, row := range g.rows {
+		for c, x := range row {
+			if x.goTo == "" {
+				continue
+			}
+			if err := e.file.SetCellHyperLink(g.name, at(c+1, r+1), x.goTo, "Location"); err != nil {
+				return err
+			}
+		}
+	}
+	return nil
+}
+
+func (e *emitter) conditions(g *grid) error {
+	for _, f := range g.flags {
+		id, ok := e.overlays[f.look]
+		if !ok {
+			var err error
+			if id, err = e.file.NewConditionalStyle(f.look.overlay()); err != nil {
+				return err
+			}
+			e.overlays[f.look] = id
+		}
+		format := id
+		options := []excelize.ConditionalFormatOptions{{Type: "formula", Criteria: f.condition, Format: &format}}
+		if err := e.file.SetConditionalFormat(g.name, f.place, options); err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
+func (e *emitter) validations(g *grid) error {
+	for _, l := range g.limits {
+		v := excelize.NewDataValidation(false)
+		v.SetSqref(l.place)
+		if l.words != "" {
+			v.SetSqrefDropList(l.words)
+		} else if err := v.SetRange(l.low, l.high, excelize.DataValidationTypeDecimal, excelize.DataValidationOperatorBetween); err != nil {
+			return err
+		}
+		v.SetInput("Input", l.prompt)
+		v.SetError(excelize.DataValidationErrorStyleStop, "Not allowed", l.refuse)
+		if err := e.file.AddDataValidation(g.name, v); err != nil {
+			return err
+		}
+	}
+	return nil
+}

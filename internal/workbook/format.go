@@ -1,0 +1,49 @@
+package workbook
+
+import (
+	"math"
+	"strings"
+)
+
+const (
+	moneyFormat  = "#,##0.00"
+	mostDecimals = 4
+)
+
+// formatFor is the number format of a column: as many decimals as the smallest
+// value needs to show three significant figures, the same all the way down.
+func formatFor(values ...float64) string {
+	decimals := 0
+	for _, v := range values {
+		if v == 0 || math.IsNaN(v) {
+			continue
+		}
+		figures := 2 - int(math.Floor(math.Log10(abs(v))))
+		decimals = max(decimals, figures)
+	}
+	if whole(values) {
+		decimals = 0
+	}
+	if decimals = min(decimals, mostDecimals); decimals <= 0 {
+		return "#,##0"
+	}
+	return "#,##0." + strings.Repeat("0", decimals)
+}
+
+func whole(values []float64) bool {
+	for _, v := range values {
+		if v != math.Trunc(v) {
+			return false
+		}
+	}
+	return true
+}
+
+// each collects one number of every item.
+func each[T any](items []T, value func(T) float64) []float64 {
+	out := make([]float64, len(items))
+	for i, x := range items {
+		out[i] = value(x)
+	}
+	return out
+}

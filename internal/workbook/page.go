@@ -1,0 +1,79 @@
+package workbook
+
+import (
+	"fmt"
+
+	"github.com/xuri/excelize/v2"
+)
+
+// A4, landscape, one page wide. Lengths in points.
+const (
+	paperA4          = 9
+	marginInches     = 0.4
+	footInches       = 0.6
+	printableWidth   = 841.9 - 2*72*marginInches
+	printableHeight  = 595.3 - 72*(marginInches+footInches)
+	pointsPerUnit    = 5.25 // width of one unit of column width
+	pointsPerPadding = 3.75 // added to each column
+)
+
+// page sets how the sheet prints: landscape, one page wide, headings repeated.
+func (e *emitter) page(g *grid) error {
+	fit, color := true, g.tab
+	if err := e.file.SetSheetProps(g.name, &excelize.SheetPropsOptions{FitToPage: &fit, TabColorRGB: &color}); err != nil {
+		return err
+	}
+	size, landscape, wide, tall := paperA4, "landscape", 1, 0
+	if err := e.file.SetPageLayout(g.name, &excelize.PageLayoutOptions{
+		Size: &size, Orientation: &landscape, FitToWidth: &wide, FitToHeight: &tall}); err != nil {
+		return err
+	}
+	side, foot := marginInches, footInches
+	if err := e.file.SetPageMargins(g.name, &excelize.PageLayoutMarginsOptions{
+		Left: &side, Right: &side, Top: &side, Bottom: &foot, Footer: &side}); err != nil {
+		return err
+	}
+	if err := e.file.SetHeaderFooter(g.name, &excelize.HeaderFooterOptions{OddFooter: "&L&A&RPage &P of &N"}); err != nil {
+		return err
+	}
+	gridLines := false
+	if err := e.file.SetSheetView(g.name, 0, &excelize.ViewOptions{ShowGridLines: &gridLines}); err != nil {
+		return err
+	}
+	return e.printRange(g)
+}
+
+func (e *emitter) printRange(g *grid) error {
+	sheet := "'" + g.name + "'!"
+	last := max(g.last(), g.drawnTo())
+	names := []excelize.DefinedName{{Name: "_xlnm.Print_Area",
+		RefersTo: sheet + fixed(1, 1) + ":" + fixed(g.printColumns, last), Scope: g.name}}
+	if g.frozenRows > 0 {
+		first := max(1, g.frozenRows-1)
+		names = append(names, excelize.DefinedName{Name: "_xlnm.Print_Titles",
+			RefersTo: fmt.Sprintf("%s$%d:$%d", sheet, first, g.frozenRows), Scope: g.name})
+	}
+	for _, n := range names {
+		if err := e.file.SetDefinedName(&n); err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
+// protect guards against slips: only inputs can be edited. There is no password.
+func (e *emitter) protect(g *grid) error {
+	return e.file.ProtectSheet(g.name, &excelize.SheetProtectionOptions{
+		SelectLockedCells: true, SelectUnlockedCells: true,
+		FormatColumns: true, FormatRows: true, EditObjects: false, AutoFilter: true,
+	})
+}
+
+// scale is the factor by which the sheet is printed, as far as widths tell.
+func (g *grid) scale() float64 {
+	width := 0.0
+	for _, w := range g.widths[:g.printColumns] {
+		width += w*pointsPerUnit + pointsPerPadding
+	}
+	return min(1, printableWidth/width)
+}

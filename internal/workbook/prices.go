@@ -1,0 +1,79 @@
+package workbook
+
+import (
+	"fmt"
+
+	"parch/catalog"
+	"parch/internal/costs"
+)
+
+var priceColumns = []column{{name: "Item"}, {name: "What it is"}, {name: "Price"}, {name: "Unit"}, {name: "Source or note"},
+	{name: "Price in the run"}, {name: "When edited"}, {name: "State"}, {name: "Own or default"}, {name: "Date"}, {name: "Confidence"}, {name: "Mark"}}
+
+const mostMoney = 1e7
+
+func (l *layout) priceList() *grid {
+	g := newGrid(sheetPrices, "What things cost. Edit a blue cell and every cost, total and rank follows. Prices are dated; check them before a decision.",
+		tabInput, checkCell(), 27, 36, 13, 13, 50, 13, 15, 16, 11, 12, 14, 24)
+	first := g.table(frameRows+2, "Prices, "+l.currency(), priceColumns)
+	g.frozenRows = first - 1
+	format := formatFor(each(l.prices, func(p costs.Price) float64 { return float(p.PerUnit) })...)
+	if len(l.prices) > 0 && format == "#,##0" || format == "#,##0.0" {
+		format = moneyFormat
+	}
+	for i, p := range l.prices {
+		l.priceRow(g, first+i, p, format)
+	}
+	l.priceRows = rows{first, first + len(l.prices) - 1}
+	if l.priceRows.empty() {
+		g.put(1, first, text(words, "no prices"))
+		return g
+	}
+	unit := l.currency()
+	g.limits = append(g.limits, limit{place: fmt.Sprintf("C%d:C%d", first, l.priceRows.last), low: 0, high: mostMoney,
+		prompt: "Price per unit, in " + unit + ". Costs, totals and ranks follow.",
+		refuse: fmt.Sprintf("A price from 0 to %.0f, in %s per unit.", mostMoney, unit)})
+	g.flags = append(g.flags,
+		flag{fmt.Sprintf("H%d:H%d", first, l.priceRows.last), fmt.Sprintf("LEN($H%d)>0", first), warn},
+		flag{fmt.Sprintf("L%d:L%d", first, l.priceRows.last), fmt.Sprintf("LEN($L%d)>0", first), warn})
+	return g
+}
+
+func (l *layout) priceRow(g *grid, row int, p costs.Price, format string) {
+	unit := l.money(p.Unit)
+	value := number(float(p.PerUnit), unit).shown(format)
+	g.putRow(row, text(plain, p.Item), text(words, p.Label), value.as(input), text(plain, unit), text(words, priceSource(p)),
+		value, text(plain, follows),
+		cell{look: formula, formula: fmt.Sprintf(`IF(%s=%s,"",%s)`, at(colValue, row), at(colRun, row), at(colAfter, row)), value: ""},
+		text(plain, ownOrDefault(p)), text(plain, p.Date), text(plain, p.Confidence), text(words, priceMark(p)))
+	l.name(priceName(p.Item, p.Unit), sheetPrices, colValue, row)
+}
+
+func priceSource(p costs.Price) string {
+	source := p.SourceText
+	if source == "" {
+		source = p.Source
+	}
+	if p.Note != "" {
+		source += "; " + p.Note
+	}
+	return source
+}
+
+func ownOrDefault(p costs.Price) string {
+	if p.Own {
+		return "own"
+	}
+	return "default"
+}
+
+// priceMark says what must be known before the price is relied upon.
+func priceMark(p costs.Price) string {
+	switch {
+	case p.Confidence == string(catalog.Invented):
+		return "invented: not a market price"
+	case p.Indicative:
+		return "indicative: check before use"
+	}
+	return ""
+}

@@ -1,0 +1,83 @@
+package workbook
+
+import (
+	"fmt"
+	"strconv"
+)
+
+// sheetPurposes names the sheets and what each is for.
+var sheetPurposes = [][2]string{
+	{sheetInputs, "lots, targets and acceptance limits; what may be edited and what follows"},
+	{sheetPrices, "every price with its date, source and mark; edit to see the costs follow"},
+	{sheetSteps, "what each step does: water, time, energy, amounts, why it stops; balances"},
+	{sheetCosts, "the bill line by line, cost by head, cost per litre, ranking"},
+	{sheetCompare, "one row per route, charts, routes not offered and why, cautions"},
+	{sheetChecks, "what the workbook checks about itself"},
+	{sheetSources, "weak numbers and references"},
+}
+
+var cautionWords = []string{
+	"This workbook compares; it does not decide and is no procedure. Site rules, safety data sheets, local codes and licensed practice decide.",
+	"Test peroxide formers before heating. Never distil to dryness.",
+	"A computed water content is a forecast: measure each lot before use.",
+}
+
+var useWords = []string{
+	"Blue cells on Inputs and Prices may be edited. Prices and batches per year are live: bills, costs per litre and ranks follow at once.",
+	"Amounts, water contents, hours and energy are values from the program. When an input that only the program can follow is edited, the sheet shows “run parch again” there and at the top of every sheet.",
+	"The state of all checks stands at the top of every sheet, in words.",
+	"Costs are positive, credits negative; water removed is positive. Money is not rounded, only shown to the cent.",
+	"Water contents are mg of water per kg of solution. Litres are at the temperature of the lot.",
+	"The sheets are protected against slips, without a password.",
+}
+
+func (l *layout) readMe() *grid {
+	r, j := l.report, l.report.Job
+	g := newGrid(sheetReadMe, "Ways to dry a bulk solvent, compared: "+oneLine(j.Title), tabText, checkCell(), 26, 120)
+	g.put(1, 3, text(plain, "Checks"))
+	g.frozenRows = frameRows
+	section := func(name string) { g.put(1, g.next(), text(block, name)) }
+	line := func(a cell, b string) { g.putRow(g.last()+1, a, text(words, b)) }
+	section("This run")
+	line(text(plain, "Program"), "parch "+r.Version)
+	line(text(plain, "Job file"), j.File)
+	line(text(plain, "Catalog of"), r.CatalogDate)
+	line(text(plain, "Seed, draws"), fmt.Sprintf("%d, %d", r.Seed, r.Draws))
+	line(text(plain, "Currency"), j.Currency)
+	line(text(plain, "Ranked by"), j.Objective)
+	if j.Invented {
+		line(text(warn, "Demonstration"), "The site, the lots and the prices of this job are invented. They are no market prices.")
+	}
+	for i, lot := range l.lots {
+		state := strconv.Itoa(len(lot.routes)) + " routes compared, " + strconv.Itoa(len(lot.Excluded)) + " not offered"
+		if lot.NothingToDo != "" {
+			state = "nothing to do: " + lot.NothingToDo
+		}
+		line(text(plain, fmt.Sprintf("Lot %d", i+1)), oneLine(lot.Job.Name)+": "+lot.solventName()+", "+state)
+	}
+	section("How to use it")
+	for i, s := range useWords {
+		line(text(plain, strconv.Itoa(i+1)), s)
+	}
+	section("Sheets")
+	for _, s := range sheetPurposes {
+		line(text(link, s[0]).linkTo(on(s[0], "A1")), s[1])
+	}
+	section("Meaning of the cells")
+	for _, s := range []struct {
+		look look
+		name string
+		says string
+	}{
+		{input, "input", "may be edited"}, {formula, "formula", "computed by the sheet"},
+		{program, "value from the program", "changes only by a new run"},
+		{pass, "holds", "a check holds, a target is reached, a first rank"}, {warn, "mind", "edited, indicative or weak"}, {fail, "fails", "a check fails, a target is missed"},
+	} {
+		line(text(s.look, s.name), s.says)
+	}
+	section("Cautions")
+	for i, s := range cautionWords {
+		line(text(plain, strconv.Itoa(i+1)), s)
+	}
+	return g
+}

@@ -1,0 +1,99 @@
+package workbook
+
+import "github.com/xuri/excelize/v2"
+
+// look is the appearance of a cell and, with it, the cell's meaning.
+type look int
+
+const (
+	plain   look = iota
+	title        // name of the sheet
+	purpose      // what the sheet is for
+	block        // heading of a block
+	heading      // heading of a column
+	words        // running text, wrapped
+	link         // jump to another sheet
+	input        // may be edited
+	formula      // computed by the sheet
+	program      // computed by the program: changes only by a new run
+	message      // state of the checks
+	pass         // flag
+	warn         // flag
+	fail         // flag
+)
+
+// paint is one row of the style table. Colours are RRGGBB.
+type paint struct {
+	ink, paper      string
+	bold, underline bool
+	size            float64
+	outlined, wrap  bool
+	unlocked        bool
+}
+
+const (
+	white   = "FFFFFF"
+	black   = "000000"
+	rule    = "8A8A8A" // outline of cells
+	darkInk = "404040" // axis text and outlines of charts
+)
+
+var paints = map[look]paint{
+	plain:   {ink: black, paper: white, size: 10},
+	title:   {ink: "2E4F46", paper: white, bold: true, size: 16},
+	purpose: {ink: "3D3D3D", paper: white, size: 10},
+	block:   {ink: "2E4F46", paper: white, bold: true, size: 12},
+	heading: {ink: white, paper: "2E4F46", bold: true, size: 10, wrap: true},
+	words:   {ink: black, paper: white, size: 10, wrap: true},
+	link:    {ink: "143D6B", paper: white, underline: true, size: 10},
+	input:   {ink: "143D6B", paper: "E6F0F8", size: 10, outlined: true, unlocked: true},
+	formula: {ink: black, paper: white, size: 10},
+	program: {ink: "3D3D3D", paper: "EFEDE8", size: 10, wrap: true},
+	message: {ink: black, paper: white, bold: true, size: 10},
+	pass:    {ink: "0E5A43", paper: "DCEDE4", bold: true, size: 10},
+	warn:    {ink: "6B4A00", paper: "F6EBCB", bold: true, size: 10},
+	fail:    {ink: "7A1B12", paper: "F5DFD8", bold: true, size: 10},
+}
+
+// styled is a look with a number format.
+type styled struct {
+	look   look
+	format string
+	number bool
+}
+
+func (s styled) style() *excelize.Style {
+	p := paints[s.look]
+	st := &excelize.Style{
+		Font:       &excelize.Font{Bold: p.bold, Size: p.size, Color: p.ink},
+		Alignment:  &excelize.Alignment{Vertical: "top", WrapText: p.wrap && !s.number},
+		Protection: &excelize.Protection{Locked: !p.unlocked},
+	}
+	if p.underline {
+		st.Font.Underline = "single"
+	}
+	if p.paper != white {
+		st.Fill = excelize.Fill{Type: "pattern", Pattern: 1, Color: []string{p.paper}}
+	}
+	if p.outlined {
+		for _, side := range []string{"left", "right", "top", "bottom"} {
+			st.Border = append(st.Border, excelize.Border{Type: side, Color: rule, Style: 1})
+		}
+	}
+	if s.format != "" {
+		st.CustomNumFmt = &s.format
+	}
+	if s.number {
+		st.Alignment.Horizontal = "right"
+	}
+	return st
+}
+
+// overlay is what a conditional format changes.
+func (l look) overlay() *excelize.Style {
+	p := paints[l]
+	return &excelize.Style{
+		Font: &excelize.Font{Bold: p.bold, Color: p.ink},
+		Fill: excelize.Fill{Type: "pattern", Pattern: 1, Color: []string{p.paper}},
+	}
+}

@@ -1,0 +1,116 @@
+package workbook
+
+import (
+	"cmp"
+	"errors"
+	"fmt"
+	"io"
+	"maps"
+	"slices"
+	"strings"
+
+	"parch/internal/study"
+)
+
+// Names of the sheets, in order.
+const (
+	sheetReadMe  = "Read me"
+	sheetInputs  = "Inputs"
+	sheetPrices  = "Prices"
+	sheetSteps   = "Steps"
+	sheetCosts   = "Costs"
+	sheetCompare = "Compare"
+	sheetChecks  = "Checks"
+	sheetSources = "Sources"
+)
+
+// Colours of the tabs, one for each kind of sheet.
+const (
+	tabText   = "6B6B6B"
+	tabInput  = "143D6B"
+	tabWork   = "2E4F46"
+	tabResult = "7A4B12"
+	tabCheck  = "5B2A6B"
+)
+
+// Write writes the report as a workbook. Nothing is written if a number cannot
+// be stored or a price is missing.
+func Write(w io.Writer, r *study.Report) error {
+	if r == nil || r.Job == nil {
+		return errors.New("workbook: no report")
+	}
+	m, err := newModel(r)
+	if err != nil {
+		return fmt.Errorf("workbook: %w", err)
+	}
+	l := &layout{model: m}
+	for _, sheet := range []func() *grid{l.inputs, l.priceList, l.steps, l.costs, l.compare, l.checks, l.sources} {
+		l.grids = append(l.grids, sheet())
+	}
+	grids := append([]*grid{l.readMe()}, l.grids...)
+	out := &file{title: "Drying routes: " + r.Job.Title, created: r.CatalogDate, grids: grids, names: l.names}
+	if err := out.write(w); err != nil {
+		return fmt.Errorf("workbook: %w", err)
+	}
+	return nil
+}
+
+// layout places the model on sheets. Each sheet notes where others find its rows.
+type layout struct {
+	*model
+	grids []*grid
+	names []definedName
+
+	inputRows     rows
+	lotInputs     []rows // inputs of each lot
+	objectiveRow  int
+	objectiveList rows
+	priceRows     rows
+	stepRows      rows // balances
+	resultRows    rows // results of the routes
+	lineRows      rows // bill
+	headRows      rows // cost by head
+	litreRows     rows // cost per litre
+	rankRows      rows // target and rank
+	compareRows   rows
+	routeRow      map[int]int // route number to place, 0-based
+}
+
+// rows is a run of rows; it is empty where last < first.
+type rows struct{ first, last int }
+
+func (r rows) empty() bool         { return r.last < r.first }
+func (r rows) at(i int) int        { return r.first + i }
+func (r rows) column(c int) string { return area(c, r.first, r.last) }
+
+func (l *layout) name(name, sheet string, column, row int) {
+	l.names = append(l.names, definedName{name, on(sheet, fixed(column, row))})
+}
+
+func (l *layout) lotName(lot *lotModel, what string) string {
+	return fmt.Sprintf("lot%d_%s", lot.no, what)
+}
+
+func priceName(item, unit string) string {
+	return "price_" + strings.ReplaceAll(item, "-", "_") + "_" + unit
+}
+
+func (l *layout) currency() string { return l.report.Job.Currency }
+
+func (l *layout) money(per string) string {
+	if per == "" {
+		return l.currency()
+	}
+	return l.currency() + "/" + per
+}
+
+func sortedKeys[K cmp.Ordered, V any](m map[K]V) []K { return slices.Sorted(maps.Keys(m)) }
+
+// checkCell shows the state of all checks at the top of a sheet.
+func checkCell() cell { return cell{look: message, formula: "check_message", value: checksHold} }
+
+const (
+	checksHold = "All checks hold"
+	runAgain   = "run parch again"
+	follows    = "the sheet follows"
+)
