@@ -12,7 +12,6 @@ func (s *shelf) readMatrix() {
 	common := s.origin(f.Need("common").Map(with()...))
 	for _, group := range []*document.Node{f.Need("classes"), f.Get("solvents")} {
 		for _, class := range group.Entries() {
-			s.at["class "+class.Key] = class.Node
 			for _, row := range class.Node.Entries() {
 				if s.cat.Agents[row.Key] == nil {
 					row.Node.Fail("%q is not an agent known here%s", row.Key, row.Node.Offer(row.Key, keysOf(s.cat.Agents)))

@@ -13,7 +13,7 @@ type shelf struct {
 	cat   *Catalog
 	files []file
 	cited map[string]bool           // source ids that a number rests on
-	at    map[string]*document.Node // where things stand that are checked at the end
+	tops  map[string]*document.Node // of the solvent files, by key
 }
 
 type file struct {
@@ -23,7 +23,7 @@ type file struct {
 }
 
 func newShelf(names []string) *shelf {
-	s := &shelf{cat: &Catalog{}, cited: map[string]bool{}, at: map[string]*document.Node{}}
+	s := &shelf{cat: &Catalog{}, cited: map[string]bool{}, tops: map[string]*document.Node{}}
 	for _, name := range names {
 		s.files = append(s.files, file{name: name})
 	}

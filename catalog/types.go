@@ -117,7 +117,7 @@ type Agent struct {
 	Lives           *Value  // uses before discard when regenerated
 	Fade            *Value  // share of capacity lost per regeneration
 	MaxDose         *Value  // kg/m3
-	LoadingBand     float64 // factor either way on the affinity, 1 = none stated
+	LoadingBand     float64 // factor either way on the loading, 1 = none stated
 }
 
 // Isotherm is q = sum_i qs_i b_i p/(1 + b_i p), b_i = b0_i exp(Q_i/(R T)),

@@ -17,7 +17,7 @@ func (s *shelf) validate() {
 }
 
 const (
-	standardPa             = 101325.0
+	standardPa           = 101325.0
 	boilingPointWithinK  = 0.5  // vapour pressure curve against the stated boiling point
 	clapeyronWithin      = 0.09 // its slope against the heat of vaporization
 	clapeyronDifferenceK = 0.01
@@ -25,7 +25,7 @@ const (
 
 // checkSolvent compares the numbers of a solvent with each other.
 func (s *shelf) checkSolvent(root *document.Node, f document.Fields, v *Solvent) {
-	s.at["solvent "+v.Key] = root
+	s.tops[v.Key] = root
 	for _, p := range properties {
 		checkCurve(f.Get(p.key), p, v)
 	}
@@ -108,7 +108,7 @@ func (s *shelf) checkAliases() {
 		for _, name := range append([]string{v.Key, v.Name, v.CAS}, v.Aliases...) {
 			folded := strings.ToLower(name)
 			if other, taken := owner[folded]; taken && !own[folded] {
-				s.at["solvent "+v.Key].Fail("%q also names %s", name, other)
+				s.tops[v.Key].Fail("%q also names %s", name, other)
 			}
 			owner[folded], own[folded] = v.Key, true
 		}

@@ -7,6 +7,7 @@ import (
 	"github.com/urfave/cli/v2"
 
 	"parch/catalog"
+	"parch/internal/job"
 	"parch/internal/report"
 )
 
@@ -69,7 +70,7 @@ func (p *program) runNew(c *cli.Context) error {
 	if err != nil {
 		return err
 	}
-	data := starter(solvent)
+	data := job.Template(solvent)
 	if output == "" || output == "-" {
 		_, err = p.stdout.Write(data)
 		return failed(err)

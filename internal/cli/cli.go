@@ -13,10 +13,8 @@ import (
 	"github.com/urfave/cli/v2"
 
 	"parch/catalog"
+	"parch/internal/study"
 )
-
-// Version of the program.
-const Version = "0.1"
 
 // program holds the streams that the commands use.
 type program struct {
@@ -47,7 +45,7 @@ func (p *program) app() *cli.App {
 		Reader:                    p.stdin,
 		Writer:                    p.stdout,
 		ErrWriter:                 p.stderr,
-		Flags:                     []cli.Flag{&cli.BoolFlag{Name: "version", Usage: "print the version and the date of the catalog"}},
+		Flags:                     []cli.Flag{onOff("version", "print the version and the date of the catalog")},
 		Commands:                  []*cli.Command{p.compare(), p.check(), p.template(), p.inspect()},
 		Action:                    p.noCommand,
 		OnUsageError:              func(_ *cli.Context, err error, _ bool) error { return flagFailure(err, nil) },
@@ -63,6 +61,11 @@ func command(c cli.Command) *cli.Command {
 	return &c
 }
 
+// onOff is a flag without a value.
+func onOff(name, usage string) cli.Flag {
+	return &cli.BoolFlag{Name: name, Usage: usage, DisableDefaultText: true}
+}
+
 // noCommand answers a command line without a known command.
 func (p *program) noCommand(c *cli.Context) error {
 	if c.Args().Present() {
@@ -73,7 +76,7 @@ func (p *program) noCommand(c *cli.Context) error {
 		if err != nil {
 			return failed(err)
 		}
-		_, err = fmt.Fprintf(p.stdout, "parch %s, catalog of %s\n", Version, cat.Date)
+		_, err = fmt.Fprintf(p.stdout, "parch %s, catalog of %s\n", study.Version, cat.Date)
 		return failed(err)
 	}
 	return misused("no command given", "parch --help lists the commands")

@@ -27,12 +27,12 @@ func (p *program) compare() *cli.Command {
 		Description: "JOB is a job file; - reads it from standard input. The ranking is printed and the workbook\n" +
 			"written, also where no route reaches a target: then the exit status is 1.",
 		Flags: []cli.Flag{
-			&cli.BoolFlag{Name: "demo", Usage: "run the built-in example, whose prices are invented"},
-			&cli.StringFlag{Name: "workbook", Value: defaultWorkbook, Usage: "write the workbook to `F.xlsx`"},
-			&cli.StringFlag{Name: "json", Usage: "write the results as JSON to `F`, or to standard output in place of the text with -"},
-			&cli.StringFlag{Name: "settings-from", Usage: "take the settings of an earlier run's JSON `F.json` instead of tuning again"},
-			&cli.BoolFlag{Name: "force", Usage: "write over files that are there already"},
-			&cli.BoolFlag{Name: "quiet", Usage: "print errors only"},
+			onOff("demo", "run the built-in example, whose prices are invented"),
+			&cli.StringFlag{Name: "workbook", Value: defaultWorkbook, Usage: "write the workbook to `F`"},
+			&cli.StringFlag{Name: "json", Usage: "write JSON to `F`; with -, to standard output in place of the text"},
+			&cli.StringFlag{Name: "settings-from", Usage: "take the settings from the JSON `F` of an earlier run"},
+			onOff("force", "write over files that are there already"),
+			onOff("quiet", "print errors only"),
 		},
 		Action: p.runCompare,
 	})
@@ -52,19 +52,13 @@ func (p *program) runCompare(c *cli.Context) error {
 	if err := q.complete(c); err != nil {
 		return err
 	}
-	if err := q.outputsFree(); err != nil {
-		return err
-	}
 	cat, err := catalog.Load()
 	if err != nil {
 		return failed(err)
 	}
-	j, err := p.readJob(q.job, q.demo, cat)
-	if err != nil {
-		return err
-	}
-	opts, err := p.readSettings(q.settings)
-	if err != nil {
+	j, jobErr := p.readJob(q.job, q.demo, cat)
+	opts, settingsErr := p.readSettings(q.settings)
+	if err := errors.Join(q.outputsFree(), jobErr, settingsErr); err != nil {
 		return err
 	}
 	r, err := study.Compare(c.Context, j, cat, opts)
@@ -103,13 +97,11 @@ func (q *request) complete(c *cli.Context) (err error) {
 }
 
 func (q *request) outputsFree() error {
-	if err := free(q.workbook, q.force, "name another file with --workbook, or write over it with --force"); err != nil {
-		return err
-	}
+	book := free(q.workbook, q.force, "name another file with --workbook, or write over it with --force")
 	if q.json == "" || q.json == "-" {
-		return nil
+		return book
 	}
-	return free(q.json, q.force, "name another file with --json, or write over it with --force")
+	return errors.Join(book, free(q.json, q.force, "name another file with --json, or write over it with --force"))
 }
 
 func (p *program) readJob(path string, demo bool, cat *catalog.Catalog) (*job.Job, error) {
@@ -145,7 +137,7 @@ func (p *program) deliver(ctx context.Context, q request, r *study.Report) error
 	if err == nil {
 		opts, err = q.writeFiles(ctx, book.Bytes(), doc.Bytes())
 	}
-	return failed(errors.Join(err, p.print(q, r, opts, doc.Bytes()), unreached(r)))
+	return errors.Join(failed(err), failed(p.print(q, r, opts, doc.Bytes())), failed(unreached(r)))
 }
 
 func (q *request) writeFiles(ctx context.Context, book, doc []byte) (opts report.Options, err error) {
@@ -183,15 +175,16 @@ func (p *program) print(q request, r *study.Report, opts report.Options, doc []b
 
 // unreached is an error where a lot has no route to its target.
 func unreached(r *study.Report) error {
-	var names []string
+	var lots []error
 	for i := range r.Lots {
 		l := &r.Lots[i]
-		if l.NothingToDo == "" && (len(l.Routes) == 0 || l.Routes[0].Rank == 0) {
-			names = append(names, l.Job.Name)
+		switch {
+		case l.NothingToDo != "" || len(l.Routes) > 0 && l.Routes[0].Rank > 0:
+		case l.CannotShow != "":
+			lots = append(lots, fmt.Errorf("%s: no route can be shown to reach the target", l.Job.Name))
+		default:
+			lots = append(lots, fmt.Errorf("%s: no route reaches the target", l.Job.Name))
 		}
 	}
-	if len(names) == 0 {
-		return nil
-	}
-	return fmt.Errorf("no route reaches the target: %s", strings.Join(names, ", "))
+	return errors.Join(lots...)
 }

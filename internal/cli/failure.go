@@ -51,10 +51,18 @@ func failed(err error) error {
 	return &failure{status: statusFailed, err: err}
 }
 
-// report prints an error and returns the exit status.
+// report prints an error, or each of several that were joined, and returns the
+// exit status.
 func (p *program) report(err error) int {
 	if err == nil {
 		return 0
+	}
+	if several, ok := err.(interface{ Unwrap() []error }); ok {
+		status := 0
+		for _, e := range several.Unwrap() {
+			status = max(status, p.report(e))
+		}
+		return status
 	}
 	var f *failure
 	if !errors.As(err, &f) {

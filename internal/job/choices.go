@@ -91,10 +91,15 @@ func (r *reader) exclude(n *document.Node) {
 
 // warnDangerous says that naming an agent does not allow a dangerous pair.
 func (r *reader) warnDangerous(n *document.Node) {
+	told := map[[2]string]bool{}
 	for _, agent := range slices.Concat(r.job.Accept.Agents, r.job.Accept.Unsuitable) {
 		for _, lot := range r.job.Lots {
-			v, ok := r.cat.Verdict(r.cat.Solvents[lot.Solvent], agent)
-			if ok && v.Word == "dangerous" {
+			s, pair := r.cat.Solvents[lot.Solvent], [2]string{lot.Solvent, agent}
+			if s == nil || told[pair] {
+				continue
+			}
+			told[pair] = true
+			if v, ok := r.cat.Verdict(s, agent); ok && v.Word == "dangerous" {
 				r.note(n, "%s with %s is dangerous and stays excluded: %s", agent, lot.Solvent, v.Reason)
 			}
 		}

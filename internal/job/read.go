@@ -46,10 +46,11 @@ func Read(name string, data []byte, cat *catalog.Catalog) (*Job, error) {
 
 // reader fills a job and remembers what it had to interpret.
 type reader struct {
-	cat      *catalog.Catalog
-	job      *Job
-	problems *document.Problems
-	notes    []note
+	cat       *catalog.Catalog
+	job       *Job
+	problems  *document.Problems
+	notes     []note
+	byDefault string // follows the currency in a message where the job does not give one
 }
 
 type note struct {
@@ -63,6 +64,9 @@ func (r *reader) whole(root *document.Node) {
 	j.Invented = f.Get("invented").Bool()
 	j.Title = r.orWord(f.Get("title"), "title", "Drying plan", r.label)
 	j.Currency = r.orWord(f.Get("currency"), "currency", "EUR", r.currency)
+	if !f.Has("currency") {
+		r.byDefault = " (by default; \"currency\" is not given)"
+	}
 	j.Objective = r.orWord(f.Get("objective"), "objective", "cost", func(n *document.Node) string { return n.OneOf(Objectives...) })
 	j.Assurance = 0.9
 	if n := f.Get("assurance"); n != nil {

@@ -68,7 +68,7 @@ func (r *reader) money(n *document.Node) (money quantity.Money, ok bool) {
 		n.Fail("%s is negative; a price is zero or more", quantity.Quote(n.Text()))
 		return money, false
 	case r.job.Currency != "" && money.Currency != r.job.Currency:
-		n.Fail("%s is in %s, but the currency of the job is %s; use one currency", quantity.Quote(n.Text()), money.Currency, r.job.Currency)
+		n.Fail("%s is in %s, but the currency of the job is %s%s; use one currency", quantity.Quote(n.Text()), money.Currency, r.job.Currency, r.byDefault)
 		return money, false
 	}
 	return money, true

@@ -14,10 +14,10 @@ func Check(w io.Writer, j *job.Job) error {
 	if len(j.Defaults) > 0 {
 		rows := make([][]string, len(j.Defaults))
 		for i, d := range j.Defaults {
-			rows[i] = []string{d.Key, d.Text, d.Confidence, d.Source, d.Date}
+			rows[i] = []string{d.Key, d.Text, d.Confidence + cite(d.Source), d.Date}
 		}
 		p.heading("Left to the catalog:")
-		p.table([]column{{"Key", false, 30}, {"Value", false, 20}, {"Confidence", false, 0}, {"Source", false, 20}, {"Date", false, 0}}, rows)
+		p.table([]column{{"Key", false, 0}, {"Value", false, 18}, {"Rests on", false, 0}, {"Date", false, 0}}, rows)
 	}
 	p.notes("Notes", j.Warnings)
 	return p.close()

@@ -15,13 +15,14 @@ var levels = []string{"danger", "caution", "info"}
 // not hold for all.
 func (p *page) cautions(l *study.Lot) {
 	var all []catalog.Caution
-	routes := map[string][]string{}
+	holds := map[string]map[string]bool{} // code, route id
 	for i := range l.Routes {
 		for _, c := range l.Routes[i].Cautions {
-			if routes[c.Code] == nil {
+			if holds[c.Code] == nil {
+				holds[c.Code] = map[string]bool{}
 				all = append(all, c)
 			}
-			routes[c.Code] = append(routes[c.Code], l.Routes[i].ID)
+			holds[c.Code][l.Routes[i].ID] = true
 		}
 	}
 	if len(all) == 0 {
@@ -32,16 +33,8 @@ func (p *page) cautions(l *study.Lot) {
 	})
 	p.heading("Cautions:")
 	for _, c := range all {
-		p.say(5, 4, "%s, %s: %s%s%s", c.Level, c.Code, c.Text, cite(c.Source), only(routes[c.Code], len(l.Routes)))
+		p.say(5, 4, "%s, %s: %s%s%s", c.Level, c.Code, c.Text, cite(c.Source), scope(l, holds[c.Code]))
 	}
-}
-
-// only names the routes that something holds for, unless it holds for all.
-func only(routes []string, all int) string {
-	if len(routes) == all {
-		return ""
-	}
-	return " (" + strings.Join(routes, ", ") + ")"
 }
 
 // warningsOf joins the warnings of a route and of its run, each once.
@@ -58,19 +51,22 @@ func warningsOf(r *study.Route) []string {
 // lotWarnings joins the warnings of a lot and of its routes, each once.
 func lotWarnings(l *study.Lot) []string {
 	var texts []string
-	routes := map[string][]string{}
+	holds := map[string]map[string]bool{} // text, route id
 	for i := range l.Routes {
 		for _, w := range warningsOf(&l.Routes[i]) {
-			if routes[w] == nil {
+			if holds[w] == nil {
+				holds[w] = map[string]bool{}
 				texts = append(texts, w)
 			}
-			routes[w] = append(routes[w], l.Routes[i].ID)
+			holds[w][l.Routes[i].ID] = true
 		}
 	}
-	all := slices.Clone(l.Warnings)
+	all := slices.DeleteFunc(slices.Clone(l.Warnings), func(w string) bool {
+		return l.CannotShow != "" && w == "target "+l.CannotShow // stands at the head of the lot
+	})
 	for _, w := range texts {
 		if !slices.Contains(l.Warnings, w) {
-			all = append(all, w+only(routes[w], len(l.Routes)))
+			all = append(all, w+scope(l, holds[w]))
 		}
 	}
 	return all

@@ -43,6 +43,8 @@ func (p *page) verdict(r *study.Report, l *study.Lot) {
 		p.say(3, 0, "Best: %s (%s). %s", best.Label, best.ID, reason(r, reach))
 		p.say(3, 0, "It leaves %s after %s of attended work, %s in all.", quantity.FormatWater(best.Run.WaterOut),
 			hours(best.Run.HoursAttended), hours(best.Run.HoursTotal))
+	case l.CannotShow != "" && len(miss) > 0:
+		p.say(3, 0, "No route can be shown to reach the target. The nearest, %s, is computed to leave %s.", miss[0].ID, quantity.FormatWater(miss[0].Run.WaterOut))
 	case len(miss) > 0:
 		p.say(3, 0, "No route reaches the target. The nearest, %s, leaves %s.", miss[0].ID, quantity.FormatWater(miss[0].Run.WaterOut))
 	default:
@@ -62,9 +64,17 @@ func reason(r *study.Report, reach []*study.Route) string {
 		text += fmt.Sprintf(" %s is %s of its cost.", headNames[head], quantity.FormatShare(math.Round(100*share)/100))
 	}
 	if len(reach) > 1 {
-		text += fmt.Sprintf(" The next best is %s, at %s.", reach[1].ID, value(reach[1]))
+		text += fmt.Sprintf(" The next best is %s, at %s%s.", reach[1].ID, value(reach[1]), more(reach))
 	}
 	return text
+}
+
+// more is by how much the second route is worse than the first.
+func more(reach []*study.Route) string {
+	if best := reach[0].Objective; best > 0 {
+		return fmt.Sprintf(", %s more", quantity.Format(reach[1].Objective/best-1, quantity.Share, "%", 2))
+	}
+	return ""
 }
 
 func objective(objective, currency string) (aim string, value func(*study.Route) string) {
@@ -152,7 +162,11 @@ func (p *page) missing(l *study.Lot) {
 	for i, route := range miss {
 		rows[i] = []string{brokenAtPlus(route.ID, routeColumns), mgKg(route.Run.WaterOut), stops(route)}
 	}
-	p.heading("Routes that do not reach it, and how far each got:")
+	if l.CannotShow != "" {
+		p.heading("Routes that cannot be shown to reach it, and how far each got:")
+	} else {
+		p.heading("Routes that do not reach it, and how far each got:")
+	}
 	p.table([]column{{"Route", false, 0}, {"Water out\nmg/kg", true, 0}, {"Why it stops there", false, 52}}, rows)
 }
 

@@ -80,12 +80,9 @@ func readSettings(raw json.RawMessage) (routes.Settings, error) {
 		problems = append(problems, fmt.Errorf("soak_hours is negative: %v", s.SoakHours))
 	}
 	for _, word := range s.Sieve {
-		if word != "regenerate" && word != "discard" {
-			problems = append(problems, fmt.Errorf(`sieve is %q; allowed: "regenerate", "discard"`, word))
+		if word != routes.Regenerate && word != routes.Discard {
+			problems = append(problems, fmt.Errorf("sieve is %q; allowed: %q, %q", word, routes.Regenerate, routes.Discard))
 		}
-	}
-	if s.StillCharges < 0 {
-		problems = append(problems, fmt.Errorf("still_charges is negative: %d", s.StillCharges))
 	}
 	return s, errors.Join(problems...)
 }

@@ -53,7 +53,8 @@ func rankedLot() study.Lot {
 			{
 				ID: "trap+soak:sieve-3a", Label: "boil out under a trap, stand over sieve 3A", Rank: 1,
 				Run: routes.Run{
-					Settings: routes.Settings{HandOverMgPerKg: []float64{61.80339887498949}, SoakHours: []float64{24}, Sieve: []string{"regenerate"}, StillCharges: 1},
+					Route:    routes.Route{{Kind: steps.Trap}, {Kind: steps.Soak, Agent: "sieve-3a"}},
+					Settings: routes.Settings{HandOverMgPerKg: []float64{61.80339887498949}, SoakHours: []float64{24}, Sieve: []string{"regenerate"}},
 					Outcomes: []steps.Outcome{
 						{Kind: steps.Trap, In: steps.Lot{SolventKg: 999.52, WaterKg: 0.48}, Out: steps.Lot{SolventKg: 999.938, WaterKg: 0.062}, Floor: 5.8e-6, Why: steps.AtTarget},
 						{Kind: steps.Soak, Agent: "sieve-3a", In: steps.Lot{SolventKg: 999.938, WaterKg: 0.062}, Out: steps.Lot{SolventKg: 999.992, WaterKg: 0.008}, Floor: 2e-6, Why: steps.AtTime, AgentKg: 1.5},
@@ -67,13 +68,13 @@ func rankedLot() study.Lot {
 			},
 			{
 				ID: "buy", Label: "buy dry", Rank: 2,
-				Run:      routes.Run{WaterOut: 10e-6, Meets: true, AgentKg: map[string]float64{}, Outcomes: []steps.Outcome{{Kind: steps.Buy, In: steps.Lot{SolventKg: 1}, Out: steps.Lot{SolventKg: 1}, Floor: math.NaN(), Why: steps.AtGrade}}},
+				Run:      routes.Run{Route: routes.Route{{Kind: steps.Buy}}, WaterOut: 10e-6, Meets: true, AgentKg: map[string]float64{}, Outcomes: []steps.Outcome{{Kind: steps.Buy, In: steps.Lot{SolventKg: 1}, Out: steps.Lot{SolventKg: 1}, Floor: math.NaN(), Why: steps.AtGrade}}},
 				Bill:     bill("100", "80.5", "10.027778"),
 				Cautions: []catalog.Caution{codes},
 			},
 			{
 				ID: "trap", Label: "boil out under a trap",
-				Run:      routes.Run{WaterOut: 20e-6, Outcomes: []steps.Outcome{{Kind: steps.Trap, In: steps.Lot{SolventKg: 1}, Out: steps.Lot{SolventKg: 1}, Why: steps.AtPractice, WhyText: "practical limit: droplets and moist air keep a trap's outlet at 20 mg/kg or more, whatever its floor"}}},
+				Run:      routes.Run{Route: routes.Route{{Kind: steps.Trap}}, WaterOut: 20e-6, Outcomes: []steps.Outcome{{Kind: steps.Trap, In: steps.Lot{SolventKg: 1}, Out: steps.Lot{SolventKg: 1}, Why: steps.AtPractice, WhyText: "practical limit: droplets and moist air keep a trap's outlet at 20 mg/kg or more, whatever its floor"}}},
 				Bill:     bill("50", "0", "2.8"),
 				Cautions: []catalog.Caution{codes},
 			},
@@ -90,7 +91,7 @@ func hopelessLot() study.Lot {
 	l := rankedLot()
 	l.Job.Name = "target too low"
 	l.Job.Target = 2e-6
-	l.AcceptAt, l.CannotShow = math.NaN(), "2 mg/kg less the uncertainty lies under the detection limit of 8 mg/kg"
+	l.AcceptAt, l.CannotShow = math.NaN(), "cannot be shown: 2 mg/kg less the uncertainty lies under the detection limit of 8 mg/kg"
 	l.Routes = l.Routes[2:]
 	l.Excluded = nil
 	return l
@@ -98,5 +99,5 @@ func hopelessLot() study.Lot {
 
 func dryLot() study.Lot {
 	return study.Lot{Job: lotOf("dry already", 8e-6), AcceptAt: 11.4e-6, Uncertainty: 3.6e-6, Injections: 2,
-		NothingToDo: "the reading of 8 mg/kg lies at or below the limit of 11.4 mg/kg"}
+		NothingToDo: "nothing to do: the reading of 8 mg/kg lies at or below the limit of 11.4 mg/kg"}
 }

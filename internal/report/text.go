@@ -4,6 +4,8 @@ import (
 	"fmt"
 	"io"
 	"math"
+	"unicode"
+	"unicode/utf8"
 
 	"parch/internal/quantity"
 	"parch/internal/study"
@@ -35,6 +37,9 @@ func Text(w io.Writer, r *study.Report, opts Options) error {
 }
 
 func priceNote(r *study.Report) string {
+	if r.Job.Invented {
+		return fmt.Sprintf("Money in %s. Every price of this job is invented for demonstration; the others are indicative.", r.Job.Currency)
+	}
 	own, indicative := 0, 0
 	for _, price := range r.Book {
 		if price.Own {
@@ -43,12 +48,11 @@ func priceNote(r *study.Report) string {
 			indicative++
 		}
 	}
-	note := fmt.Sprintf("Money in %s: %s of your own, %s of the catalog, to be checked before use.",
-		r.Job.Currency, count(float64(own), "price", "prices"), count(float64(indicative), "indicative price", "indicative prices"))
-	if r.Job.Invented {
-		note = fmt.Sprintf("Money in %s. Every price of this job is invented for demonstration; the others are indicative.", r.Job.Currency)
+	if own+indicative == 0 {
+		return fmt.Sprintf("Money in %s.", r.Job.Currency)
 	}
-	return note
+	return fmt.Sprintf("Money in %s: %s of your own, %s of the catalog, to be checked before use.",
+		r.Job.Currency, count(float64(own), "price", "prices"), count(float64(indicative), "indicative price", "indicative prices"))
 }
 
 func (p *page) lot(n int, r *study.Report, l *study.Lot) {
@@ -57,7 +61,7 @@ func (p *page) lot(n int, r *study.Report, l *study.Lot) {
 		solventName(l), count(l.Job.BatchesPerYear, "batch", "batches"), quantity.FormatWater(l.Job.Water), quantity.FormatWater(l.Job.Target))
 	p.acceptance(l)
 	if l.NothingToDo != "" {
-		p.say(3, 0, "Nothing to do: %s", l.NothingToDo)
+		p.say(3, 0, "%s.", sentence(l.NothingToDo))
 	}
 	if l.NothingToDo == "" || len(l.Routes) > 0 {
 		p.verdict(r, l)
@@ -79,12 +83,18 @@ func solventName(l *study.Lot) string {
 func (p *page) acceptance(l *study.Lot) {
 	switch {
 	case l.CannotShow != "":
-		p.say(3, 0, "Cannot be shown: %s", l.CannotShow)
+		p.say(3, 0, "Target %s.", l.CannotShow)
 	case !math.IsNaN(l.AcceptAt):
 		p.say(3, 0, "Accepted at or below %s: the target less %s, the uncertainty of the mean of %s.",
 			quantity.FormatWater(l.AcceptAt), quantity.FormatWater(l.Uncertainty),
 			count(float64(l.Injections), "Karl Fischer injection", "Karl Fischer injections"))
 	}
+}
+
+// sentence begins a text with a capital letter.
+func sentence(s string) string {
+	r, size := utf8.DecodeRuneInString(s)
+	return string(unicode.ToUpper(r)) + s[size:]
 }
 
 func count(n float64, one, many string) string {

@@ -106,6 +106,10 @@ func (c *Case) refuseHeating() (reason, source string) {
 	return "", ""
 }
 
+// leastExcess is how far above saturation a lot without declared free water must
+// lie before settling is offered: the solubility is not known better.
+const leastExcess = 1.02
+
 func (c *Case) refuseSettle() (reason, source string) {
 	saturated, ok, err := c.Mixture.Solubility(c.Job.Site.RoomK)
 	switch {
@@ -113,7 +117,7 @@ func (c *Case) refuseSettle() (reason, source string) {
 		return err.Error(), c.Solvent.Water.Source
 	case !ok:
 		return fmt.Sprintf("nothing settles: water and %s form no second layer at %.0f °C", c.Solvent.Name, c.Job.Site.RoomK-273.15), c.Solvent.Water.Source
-	case c.Feed.Water() <= saturated:
+	case c.Lot.FreeWaterM3 == 0 && c.Feed.Water() <= leastExcess*saturated:
 		return fmt.Sprintf("nothing settles: %s holds %.4g mg/kg at %.0f °C, the lot has %.4g", c.Solvent.Name, saturated*1e6, c.Job.Site.RoomK-273.15, c.Feed.Water()*1e6), c.Solvent.Water.Source
 	}
 	return "", ""

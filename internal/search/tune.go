@@ -127,7 +127,26 @@ func (t *Tuner) bestHandOver(r routes.Route, place int, lo, hi float64) (trial, 
 		return best, last
 	}
 	refine(try, math.Max(lo, bestU-spacing), math.Min(hi, bestU+spacing))
-	return best, nil
+	return t.rounded(r, place, best, lo, hi)
+}
+
+// rounded prefers a hand-over of two digits where it costs next to nothing: it
+// is a number that somebody reads off a titrator.
+func (t *Tuner) rounded(r routes.Route, place int, best trial, lo, hi float64) (trial, error) {
+	const next = 1e-4 // share of the objective
+	exact := best.run.Settings.HandOverMgPerKg[place]
+	magnitude := math.Pow(10, math.Floor(math.Log10(exact))-1)
+	handOver := math.Round(exact/magnitude) * magnitude
+	if handOver < math.Exp(lo)*(1-1e-9) || handOver > math.Exp(hi) {
+		return best, nil
+	}
+	found, err := t.bestSoak(r, func(hours float64, after string) routes.Settings {
+		return settings(r, place, handOver, hours, after)
+	})
+	if err != nil || found.score > best.score*(1+next) {
+		return best, nil
+	}
+	return found, nil
 }
 
 // refine minimises f between lo and hi; u = lo + (hi - lo)/(1 + exp(-z)) keeps

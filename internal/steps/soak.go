@@ -84,17 +84,12 @@ func (b *bath) loading(water float64) float64 {
 	return b.sorbent.CapacityShare * b.sorbent.Loading(pressure, b.rig.TempK)
 }
 
-const leastWater = 1e-12 // kg/kg
+const leastWater = 1e-20 // kg/kg, the lower end of every search
 
-// floor is the solution in equilibrium with the sorbent's residual loading.
+// floor is the solution in equilibrium with the sorbent's residual loading,
+// which no dose and no time can pass.
 func (b *bath) floor() (float64, error) {
-	w, err := thermo.Brent(func(lnW float64) float64 {
-		return b.loading(math.Exp(lnW)) - b.sorbent.ResidualKgPerKg
-	}, math.Log(leastWater), math.Log(0.5), 1e-12)
-	if err != nil {
-		return math.NaN(), fmt.Errorf("%s holding %.3g g/100 g: no equilibrium: %w", b.sorbent.Key, 100*b.sorbent.ResidualKgPerKg, err)
-	}
-	return math.Exp(w), nil
+	return b.balanced(math.Log(0.5), func(w float64) float64 { return b.loading(w) - b.sorbent.ResidualKgPerKg })
 }
 
 // equilibrium of doseKg of sorbent with the whole lot:
@@ -102,13 +97,19 @@ func (b *bath) floor() (float64, error) {
 //	W0 + m q0 = W + m q(a_w(W))
 func (b *bath) equilibrium(doseKg float64) (float64, error) {
 	feed := b.feed.Water()
-	excess := func(lnW float64) float64 {
-		w := math.Exp(lnW)
+	return b.balanced(math.Log(feed), func(w float64) float64 {
 		return b.feed.SolventKg*(w/(1-w)-feed/(1-feed)) + doseKg*(b.loading(w)-b.sorbent.ResidualKgPerKg)
+	})
+}
+
+// balanced is the water at which a surplus that grows with the water is zero.
+func (b *bath) balanced(lnHighest float64, surplus func(w float64) float64) (float64, error) {
+	if surplus(leastWater) >= 0 {
+		return leastWater, nil
 	}
-	lnW, err := thermo.Brent(excess, math.Log(leastWater), math.Log(feed), 1e-13)
+	lnW, err := thermo.Brent(func(lnW float64) float64 { return surplus(math.Exp(lnW)) }, math.Log(leastWater), lnHighest, 1e-13)
 	if err != nil {
-		return math.NaN(), fmt.Errorf("%w: %s holding %.3g g/100 g against %.3g mg/kg", ErrWetSieve, b.sorbent.Key, 100*b.sorbent.ResidualKgPerKg, feed*mgPerKg)
+		return math.NaN(), fmt.Errorf("%w: %s holding %.3g g/100 g against %.3g mg/kg", ErrWetSieve, b.sorbent.Key, 100*b.sorbent.ResidualKgPerKg, b.feed.Water()*mgPerKg)
 	}
 	return math.Exp(lnW), nil
 }
@@ -166,7 +167,7 @@ func (b *bath) exact(d SoakDose, goal, timeS float64) (SoakDose, error) {
 		dose := math.Exp(lnDose)
 		e := math.Exp(-b.rate(dose) * timeS)
 		eq := (goal - feed*e) / (1 - e)
-		if eq <= leastWater {
+		if eq <= 0 {
 			return -feed * b.feed.SolventKg
 		}
 		taken := b.feed.SolventKg * (feed/(1-feed) - eq/(1-eq))

@@ -124,7 +124,8 @@ type boiling struct {
 	boiledMol        float64
 	boiledKg         float64
 	aqueousMol       float64 // collected
-	heldMol          float64 // organic layer kept in the receiver
+	heldWaterMol     float64 // in the organic layer kept in the receiver
+	heldSolventMol   float64
 	course           []Point
 }
 
@@ -186,47 +187,57 @@ func (b *boiling) aqueousShare(yWater float64) float64 {
 	return (yWater - l.XOrganic) / (l.XAqueous - l.XOrganic)
 }
 
-const fillSteps = 24
+// A step of the filling takes at most this share of the water in the pot, and
+// at most this share of the fill.
+const (
+	fillWaterShare = 0.05
+	fillShare      = 1.0 / 24
+)
 
-// fill boils the receiver full; nothing returns (Rayleigh, dN_i/dn = -y_i).
-// The organic layer of that condensate stays in the receiver.
+// fill boils the receiver full; nothing returns (Rayleigh, dN_i/dn = -y_i, by
+// the midpoint rule). The organic layer of that condensate stays in the receiver.
 func (b *boiling) fill() error {
 	v, err := b.vapour(b.fraction())
 	if err != nil {
 		return err
 	}
-	molarVolume := b.m.MolarVolume(v.YWater, b.eq.ReceiverK)
-	step := b.rig.FillVolumeM3 / molarVolume / fillSteps
-	for range fillSteps {
+	b.note()
+	total := b.rig.FillVolumeM3 / b.m.MolarVolume(v.YWater, b.eq.ReceiverK)
+	if total >= b.solvent {
+		return fmt.Errorf("%w: the receiver holds %.3g L and would take the whole charge", ErrNoTrap, 1e3*b.rig.FillVolumeM3)
+	}
+	for left := total; left > 0; {
+		step := math.Min(left, math.Min(fillShare*total, fillWaterShare*b.water/v.YWater))
+		if left-step < 1e-9*total {
+			step = left
+		}
 		half := step / 2
 		mid, err := b.vapour((b.water - half*v.YWater) / (b.water + b.solvent - half))
 		if err != nil {
 			return err
 		}
-		if step >= b.solvent {
-			return fmt.Errorf("%w: the receiver holds %.3g L and would take the whole charge", ErrNoTrap, 1e3*b.rig.FillVolumeM3)
-		}
 		b.water -= step * mid.YWater
 		b.solvent -= step * (1 - mid.YWater)
-		b.count(step, mid, 0)
+		b.countUnreturned(step, mid)
 		if v, err = b.vapour(b.fraction()); err != nil {
 			return err
 		}
+		left -= step
 	}
+	b.note()
 	return nil
 }
 
-// count books step moles of vapour; share of it returned as organic layer.
-func (b *boiling) count(step float64, v thermo.Vapour, returned float64) {
-	l := math.Min(1, math.Max(0, b.aqueousShare(v.YWater)))
+// countUnreturned books step moles of vapour that fill the receiver.
+func (b *boiling) countUnreturned(step float64, v thermo.Vapour) {
+	aqueous := math.Min(1, math.Max(0, b.aqueousShare(v.YWater)))
+	xAq := b.eq.Floor.Layers.XAqueous
 	b.boiledMol += step
 	b.boiledKg += step * b.molarMass(v.YWater)
-	b.boilUpJ += step * (b.latent(v) + returned*b.reheat(v.TempK))
-	b.aqueousMol += step * l
-	if returned == 0 {
-		b.heldMol += step * (1 - l)
-	}
-	b.note()
+	b.boilUpJ += step * b.latent(v)
+	b.aqueousMol += step * aqueous
+	b.heldWaterMol += step * (v.YWater - aqueous*xAq)
+	b.heldSolventMol += step * (1 - v.YWater - aqueous*(1-xAq))
 }
 
 func (b *boiling) note() {
@@ -270,6 +281,9 @@ const quadraturePoints = 24
 // segment takes the pot down to the water mole fraction x along the straight
 // line N_solvent(N_water) that the removal of aqueous layer draws.
 func (b *boiling) segment(x float64) error {
+	if x >= b.fraction() {
+		return nil // filling the receiver went past it
+	}
 	xAq := b.eq.Floor.Layers.XAqueous
 	solventPerWater := (1 - xAq) / xAq
 	water0, solvent0 := b.water, b.solvent
@@ -309,13 +323,19 @@ func (b *boiling) segment(x float64) error {
 
 // integrate3 integrates three quantities at once by Gauss-Legendre quadrature.
 func integrate3(f func(u float64) (a, b, c float64), lo, hi float64) (a, b, c float64) {
-	var x, weight [quadraturePoints]float64
-	quad.Legendre{}.FixedLocations(x[:], weight[:], lo, hi)
-	for i := range x {
-		fa, fb, fc := f(x[i])
-		a += weight[i] * fa
-		b += weight[i] * fb
-		c += weight[i] * fc
+	mid, half := (lo+hi)/2, (hi-lo)/2
+	for i, node := range legendre.nodes {
+		fa, fb, fc := f(mid + half*node)
+		weight := half * legendre.weights[i]
+		a += weight * fa
+		b += weight * fb
+		c += weight * fc
 	}
 	return a, b, c
 }
+
+// legendre holds nodes and weights on -1 to 1.
+var legendre = func() (r struct{ nodes, weights [quadraturePoints]float64 }) {
+	quad.Legendre{}.FixedLocations(r.nodes[:], r.weights[:], -1, 1)
+	return r
+}()

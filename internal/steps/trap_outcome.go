@@ -87,8 +87,8 @@ func (b *boiling) losses(refluxS float64) trapLosses {
 	return trapLosses{
 		aqueousSolventKg: b.aqueousMol * (1 - l.XAqueous) * solvent,
 		aqueousWaterKg:   b.aqueousMol * l.XAqueous * water,
-		heldSolventKg:    b.heldMol * (1 - l.XOrganic) * solvent,
-		heldWaterKg:      b.heldMol * l.XOrganic * water,
+		heldSolventKg:    b.heldSolventMol * solvent,
+		heldWaterKg:      b.heldWaterMol * water,
 		vapourKg:         b.solvent * solvent * b.rules.VapourLossPerDay * refluxS / secondsPerDay,
 	}
 }

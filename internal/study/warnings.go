@@ -52,7 +52,7 @@ func runWarnings(k *routes.Case, run routes.Run) []string {
 		case steps.Soak:
 			agent := k.Catalog.Agents[o.Agent]
 			if agent.LoadingBand > 1 {
-				add("%s: affinity known to a factor of %.2g only", agent.Name, agent.LoadingBand)
+				add("%s: loading known to a factor of %.2g only", agent.Name, agent.LoadingBand)
 			}
 			add("the sieve is taken to hold %.2g g/100 g from its history; this and the mixing rate of a still vessel rule the result (fitted to few published dryings, most within a factor of 2)", k.Lot.ResidualLoading*100)
 		case steps.Buy:

@@ -71,37 +71,45 @@ func (m *Mixture) BubbleFrom(xWater, pressurePa, guessK float64) (Vapour, error)
 	if !(xWater >= 0 && xWater <= 1) {
 		return Vapour{}, fmt.Errorf("mole fraction %g is outside 0 to 1", xWater)
 	}
-	excess := func(t float64) (lnRatio, yWater float64) {
-		water, solvent := m.partials(xWater, t)
-		sum := water + solvent
-		return math.Log(sum / pressurePa), water / sum
+	if v, ok := m.bubbleByNewton(xWater, pressurePa, guessK); ok {
+		return v, nil
 	}
+	lo, hi := searchRange(m.Solvent)
+	t, err := Brent(func(t float64) float64 { f, _ := m.bubbleExcess(xWater, pressurePa, t); return f }, lo, hi, temperatureToleranceK)
+	if err != nil {
+		return Vapour{}, fmt.Errorf("water + %s, x = %.4g, %.4g kPa: no bubble point: %w", m.Solvent.Key, xWater, pressurePa/1e3, err)
+	}
+	_, y := m.bubbleExcess(xWater, pressurePa, t)
+	return Vapour{t, y}, nil
+}
+
+// bubbleExcess is ln(bubble pressure/pressure) and the vapour at tK.
+func (m *Mixture) bubbleExcess(xWater, pressurePa, tK float64) (lnRatio, yWater float64) {
+	water, solvent := m.partials(xWater, tK)
+	sum := water + solvent
+	return math.Log(sum / pressurePa), water / sum
+}
+
+func (m *Mixture) bubbleByNewton(xWater, pressurePa, guessK float64) (Vapour, bool) {
 	t := guessK
 	if t <= 0 {
 		t = 350
 	}
 	for range 30 {
-		f, y := excess(t)
-		g, _ := excess(t + slopeStepK)
+		f, _ := m.bubbleExcess(xWater, pressurePa, t)
+		g, _ := m.bubbleExcess(xWater, pressurePa, t+slopeStepK)
 		slope := (g - f) / slopeStepK
 		step := -f / slope
 		if !(slope > 0) || math.Abs(step) > 60 {
 			break
 		}
 		t += step
-		if math.Abs(step) < 1e-8 {
-			if _, y = excess(t); !math.IsNaN(y) {
-				return Vapour{t, y}, nil
-			}
+		if math.Abs(step) < 1e-7 {
+			_, y := m.bubbleExcess(xWater, pressurePa, t)
+			return Vapour{t, y}, !math.IsNaN(y)
 		}
 	}
-	lo, hi := searchRange(m.Solvent)
-	t, err := Brent(func(t float64) float64 { f, _ := excess(t); return f }, lo, hi, temperatureToleranceK)
-	if err != nil {
-		return Vapour{}, fmt.Errorf("water + %s, x = %.4g, %.4g kPa: no bubble point: %w", m.Solvent.Key, xWater, pressurePa/1e3, err)
-	}
-	_, y := excess(t)
-	return Vapour{t, y}, nil
+	return Vapour{}, false
 }
 
 const slopeStepK = 1e-4

@@ -61,7 +61,7 @@ type Correlation struct {
 
 // Known reports whether the equation is one of the published forms above.
 func (e Equation) Known() bool {
-	_, ok := forms[e]
+	_, ok := evaluate(e, &[7]float64{}, 300)
 	return ok
 }
 
@@ -79,11 +79,8 @@ func (c Correlation) Check() error {
 // At returns the property at tK in SI units. Outside the physical range of the
 // form (above the critical temperature, say) the result is NaN.
 func (c Correlation) At(tK float64) float64 {
-	form, ok := forms[c.Equation]
-	if !ok {
-		return math.NaN()
-	}
-	return c.Scale * form(&c.C, tK)
+	value, _ := evaluate(c.Equation, &c.C, tK)
+	return c.Scale * value
 }
 
 // Extrapolated reports whether tK lies outside the range of the fit.
@@ -91,68 +88,126 @@ func (c Correlation) Extrapolated(tK float64) bool {
 	return (c.TMinK > 0 && tK < c.TMinK) || (c.TMaxK > 0 && tK > c.TMaxK)
 }
 
-var forms = map[Equation]func(c *[7]float64, t float64) float64{
-	DIPPR101: func(c *[7]float64, t float64) float64 {
-		return math.Exp(c[0] + c[1]/t + c[2]*math.Log(t) + c[3]*power(t, c[4]))
-	},
-	Antoine10: func(c *[7]float64, t float64) float64 { return math.Pow(10, c[0]-c[1]/(t+c[2])) },
-	AntoineLn: func(c *[7]float64, t float64) float64 { return math.Exp(c[0] - c[1]/(t+c[2])) },
-	Wagner25: func(c *[7]float64, t float64) float64 {
-		tr := t / c[4]
-		u := 1 - tr
-		return c[5] * math.Exp((c[0]*u+c[1]*math.Pow(u, 1.5)+c[2]*math.Pow(u, 2.5)+c[3]*math.Pow(u, 5))/tr)
-	},
-	Wagner36: func(c *[7]float64, t float64) float64 {
-		tr := t / c[4]
-		u := 1 - tr
-		return c[5] * math.Exp((c[0]*u+c[1]*math.Pow(u, 1.5)+c[2]*u*u*u+c[3]*math.Pow(u, 6))/tr)
-	},
-	DIPPR106: func(c *[7]float64, t float64) float64 {
-		tr := t / c[4]
-		return c[0] * math.Pow(1-tr, c[1]+tr*(c[2]+tr*(c[3]+tr*c[5])))
-	},
-	PPDS12: func(c *[7]float64, t float64) float64 {
-		u := 1 - t/c[5]
-		return GasConstant * c[5] * (c[0]*math.Cbrt(u) + c[1]*math.Cbrt(u*u) + u*(c[2]+u*c[3]) + c[4]*math.Pow(u, 6))
-	},
-	Watson: func(c *[7]float64, t float64) float64 {
-		return c[0] * math.Pow((1-t/c[3])/(1-c[1]/c[3]), c[2])
-	},
-	DIPPR100: func(c *[7]float64, t float64) float64 {
-		return c[0] + t*(c[1]+t*(c[2]+t*(c[3]+t*c[4])))
-	},
-	DIPPR114: func(c *[7]float64, t float64) float64 {
-		u := 1 - t/c[4]
-		return c[0]*c[0]/u + c[1] - u*(2*c[0]*c[2]+u*(c[0]*c[3]+u*(c[2]*c[2]/3+u*(c[2]*c[3]/2+u*c[3]*c[3]/5))))
-	},
-	CubicR: func(c *[7]float64, t float64) float64 {
-		h := t / 100
-		return GasConstant * (c[0] + h*(c[1]+h*(c[2]+h*c[3])))
-	},
-	Linear298: func(c *[7]float64, t float64) float64 { return c[0] + c[1]*(t-298.15) },
-	DIPPR105: func(c *[7]float64, t float64) float64 {
-		return c[0] / math.Pow(c[1], 1+math.Pow(1-t/c[2], c[3]))
-	},
-	VDI106: func(c *[7]float64, t float64) float64 {
-		u := 1 - t/c[4]
-		return c[5] + c[0]*math.Pow(u, 0.35) + c[1]*math.Cbrt(u*u) + u*(c[2]+c[3]*math.Cbrt(u))
-	},
-	QuadRho: func(c *[7]float64, t float64) float64 { return c[0] + t*(c[1]+t*c[2]) },
-	PPDS9: func(c *[7]float64, t float64) float64 {
-		x := (c[2] - t) / (t - c[3])
-		return c[4] * math.Exp(math.Cbrt(x)*(c[0]+c[1]*x))
-	},
-	VN3:     func(c *[7]float64, t float64) float64 { return 1e-3 * math.Pow(10, c[0]+c[1]/(c[2]-t)) },
-	Andrade: func(c *[7]float64, t float64) float64 { return math.Exp(c[0] + c[1]/t) },
+// evaluate applies an equation to its coefficients; ok is false where it is not known.
+func evaluate(e Equation, c *[7]float64, t float64) (value float64, ok bool) {
+	switch e {
+	case DIPPR101:
+		return dippr101(c, t), true
+	case Antoine10:
+		return antoine10(c, t), true
+	case AntoineLn:
+		return antoineLn(c, t), true
+	case Wagner25:
+		return wagner25(c, t), true
+	case Wagner36:
+		return wagner36(c, t), true
+	case DIPPR106:
+		return dippr106(c, t), true
+	case PPDS12:
+		return ppds12(c, t), true
+	case Watson:
+		return watson(c, t), true
+	case DIPPR100:
+		return dippr100(c, t), true
+	case DIPPR114:
+		return dippr114(c, t), true
+	case CubicR:
+		return cubicR(c, t), true
+	case Linear298:
+		return linear298(c, t), true
+	case DIPPR105:
+		return dippr105(c, t), true
+	case VDI106:
+		return vdi106(c, t), true
+	case QuadRho:
+		return quadRho(c, t), true
+	case PPDS9:
+		return ppds9(c, t), true
+	case VN3:
+		return vn3(c, t), true
+	case Andrade:
+		return andrade(c, t), true
+	}
+	return math.NaN(), false
 }
+
+func dippr101(c *[7]float64, t float64) float64 {
+	return math.Exp(c[0] + c[1]/t + c[2]*math.Log(t) + c[3]*power(t, c[4]))
+}
+
+func antoine10(c *[7]float64, t float64) float64 { return math.Pow(10, c[0]-c[1]/(t+c[2])) }
+
+func antoineLn(c *[7]float64, t float64) float64 { return math.Exp(c[0] - c[1]/(t+c[2])) }
+
+func wagner25(c *[7]float64, t float64) float64 {
+	tr := t / c[4]
+	u := 1 - tr
+	return c[5] * math.Exp((c[0]*u+c[1]*math.Pow(u, 1.5)+c[2]*math.Pow(u, 2.5)+c[3]*math.Pow(u, 5))/tr)
+}
+
+func wagner36(c *[7]float64, t float64) float64 {
+	tr := t / c[4]
+	u := 1 - tr
+	return c[5] * math.Exp((c[0]*u+c[1]*math.Pow(u, 1.5)+c[2]*u*u*u+c[3]*math.Pow(u, 6))/tr)
+}
+
+func dippr106(c *[7]float64, t float64) float64 {
+	tr := t / c[4]
+	return c[0] * math.Pow(1-tr, c[1]+tr*(c[2]+tr*(c[3]+tr*c[5])))
+}
+
+func ppds12(c *[7]float64, t float64) float64 {
+	u := 1 - t/c[5]
+	return GasConstant * c[5] * (c[0]*math.Cbrt(u) + c[1]*math.Cbrt(u*u) + u*(c[2]+u*c[3]) + c[4]*math.Pow(u, 6))
+}
+
+func watson(c *[7]float64, t float64) float64 {
+	return c[0] * math.Pow((1-t/c[3])/(1-c[1]/c[3]), c[2])
+}
+
+func dippr100(c *[7]float64, t float64) float64 {
+	return c[0] + t*(c[1]+t*(c[2]+t*(c[3]+t*c[4])))
+}
+
+func dippr114(c *[7]float64, t float64) float64 {
+	u := 1 - t/c[4]
+	return c[0]*c[0]/u + c[1] - u*(2*c[0]*c[2]+u*(c[0]*c[3]+u*(c[2]*c[2]/3+u*(c[2]*c[3]/2+u*c[3]*c[3]/5))))
+}
+
+func cubicR(c *[7]float64, t float64) float64 {
+	h := t / 100
+	return GasConstant * (c[0] + h*(c[1]+h*(c[2]+h*c[3])))
+}
+
+func linear298(c *[7]float64, t float64) float64 { return c[0] + c[1]*(t-298.15) }
+
+func dippr105(c *[7]float64, t float64) float64 {
+	return c[0] / math.Pow(c[1], 1+math.Pow(1-t/c[2], c[3]))
+}
+
+func vdi106(c *[7]float64, t float64) float64 {
+	u := 1 - t/c[4]
+	return c[5] + c[0]*math.Pow(u, 0.35) + c[1]*math.Cbrt(u*u) + u*(c[2]+c[3]*math.Cbrt(u))
+}
+
+func quadRho(c *[7]float64, t float64) float64 { return c[0] + t*(c[1]+t*c[2]) }
+
+func ppds9(c *[7]float64, t float64) float64 {
+	x := (c[2] - t) / (t - c[3])
+	return c[4] * math.Exp(math.Cbrt(x)*(c[0]+c[1]*x))
+}
+
+func vn3(c *[7]float64, t float64) float64 { return 1e-3 * math.Pow(10, c[0]+c[1]/(c[2]-t)) }
+
+func andrade(c *[7]float64, t float64) float64 { return math.Exp(c[0] + c[1]/t) }
 
 // power is t^n, exact and quick for the whole exponents that the tables use.
 func power(t, n float64) float64 {
 	switch n {
 	case 0:
-		return 1
+		return 1(c, t), true
 	case 1:
-		return t
+		return t(c, t), true
 	case 2:
 		return t * t
 	case 6:

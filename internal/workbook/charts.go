@@ -1,8 +1,6 @@
 package workbook
 
 import (
-	"bytes"
-	"errors"
 	"fmt"
 	"math"
 
@@ -199,13 +197,4 @@ func baseChart(kind excelize.ChartType, name string) *excelize.Chart {
 		Fill:       solid(white),
 		Border:     excelize.LineOptions{Type: excelize.LineSolid, Width: 0.75, Fill: solid(rule)},
 	}
-}
-
-// patchChart puts right what the chart writer leaves open: where categories run
-// from top to bottom, the value axis belongs at the bottom.
-func patchChart(part []byte) ([]byte, error) {
-	if !bytes.Contains(part, []byte(`<c:orientation val="maxMin"`)) && !bytes.Contains(part, []byte(`<orientation val="maxMin"`)) {
-		return part, nil
-	}
-	return part, errors.New("todo")
 }

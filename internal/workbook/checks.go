@@ -1,8 +1,6 @@
 package workbook
 
-import (
-	"fmt"
-)
+import "fmt"
 
 var checkColumns = []column{{name: "No"}, {name: "Check"}, {name: "Found"}, {name: "Expected"}, {name: "Difference"}, {name: "Tolerance"},
 	{name: "Unit"}, {name: "Flag"}, {name: "Result"}}

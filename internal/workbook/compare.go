@@ -2,7 +2,7 @@ package workbook
 
 import (
 	"fmt"
-	"strings"
+	"math"
 )
 
 // Columns of Compare.
@@ -65,6 +65,10 @@ func (l *layout) compareRow(g *grid, i int) {
 	if r.rank > 0 {
 		place = float64(r.rank)
 	}
+	carbon := blank(formula) // missing is no zero
+	if !math.IsNaN(r.Run.CO2eKg) {
+		carbon = steps(resultCarbon, r.Run.CO2eKg).in("kg CO2e").shown(decimals(2))
+	}
 	rankAt := on(sheetCosts, at(rankPlace, rank))
 	g.putRow(row, text(words, r.lot.Job.Name), text(words, r.ID),
 		costs(rankReaches, rank, yesNo(r.reaches)),
@@ -78,7 +82,7 @@ func (l *layout) compareRow(g *grid, i int) {
 		costs(litreWaste, litre, r.values[2]).in("kg").shown(decimals(2)),
 		costs(litreDelivered, litre, r.litres).in("L").shown(decimals(2)),
 		costs(litreYear, litre, r.perYear).in(money).shown(decimals(0)),
-		steps(resultCarbon, r.Run.CO2eKg).in("kg CO2e").shown(decimals(2)),
+		carbon,
 		costs(rankLimit, rank, r.lot.acceptAt).in("mg/kg").shown(water),
 		derived(l.lotName(r.lot, "target_water"), r.lot.target).in("mg/kg").shown(water),
 		derived(fmt.Sprintf("MAX(D%d,job_lowest_plotted)", row), max(r.waterOut, lowestPlotted)).in("mg/kg").shown(water),
@@ -101,7 +105,8 @@ func (l *layout) excludedBlock(g *grid) {
 	}
 	row := l.listBlock(g, "Not offered, and why", "Lot", "Route or agent", "Reason and source")
 	for _, x := range all {
-		g.putRow(row, text(words, x[0]), text(words, x[1]), text(plain, oneLine(x[2])))
+		g.putRow(row, text(words, x[0]), text(words, x[1]), blank(plain))
+		g.across(3, len(g.widths), row, x[2])
 		row++
 	}
 }
@@ -117,8 +122,6 @@ func (l *layout) listBlock(g *grid, name, a, b, c string) int {
 	}
 	return row + 2
 }
-
-func oneLine(s string) string { return strings.Join(strings.Fields(s), " ") }
 
 // cautionBlock lists each caution once, with the routes it is for.
 func (l *layout) cautionBlock(g *grid) {
@@ -138,11 +141,12 @@ func (l *layout) cautionBlock(g *grid) {
 				continue
 			}
 			seen[k] = row
-			words3 := c.Text
+			says := c.Text
 			if c.Source != "" {
-				words3 += " [" + c.Source + "]"
+				says += " [" + c.Source + "]"
 			}
-			g.putRow(row, text(words, c.Level), text(words, r.lot.Job.Name+": "+r.ID), text(plain, oneLine(words3)))
+			g.putRow(row, text(words, c.Level), text(words, r.lot.Job.Name+": "+r.ID))
+			g.across(3, len(g.widths), row, says)
 			row++
 		}
 	}
@@ -174,7 +178,8 @@ func (l *layout) noteBlock(g *grid) {
 	}
 	row := l.listBlock(g, "Notes", "Lot", "Route id", "Note")
 	for _, x := range all {
-		g.putRow(row, text(words, x[0]), text(words, x[1]), text(plain, oneLine(x[2])))
+		g.putRow(row, text(words, x[0]), text(words, x[1]), blank(plain))
+		g.across(3, len(g.widths), row, x[2])
 		row++
 	}
 }

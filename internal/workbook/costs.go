@@ -156,7 +156,7 @@ func (l *layout) rankBlock(g *grid) {
 			derived(on(sheetSteps, at(resultWater, l.resultRows.at(i))), r.waterOut).in("mg/kg").shown(water),
 			derived(l.lotName(r.lot, "accept_limit"), r.lot.acceptAt).in("mg/kg").shown(water),
 			derived(l.lotName(r.lot, "can_show"), yesNo(r.lot.shown)),
-			derived(fmt.Sprintf(`IF(AND(D%d<=E%d+job_water_tolerance,F%d="yes"),"yes","no")`, row, row, row), yesNo(r.reaches)),
+			derived(fmt.Sprintf(`IF(AND(D%d<=E%d*(1+job_tie),F%d="yes"),"yes","no")`, row, row, row), yesNo(r.reaches)),
 			derived(fmt.Sprintf(`IF(G%d="yes",C%d,0)`, row, row), r.contest()).shown("0"),
 			derived(fmt.Sprintf("INDEX(F%d:I%d,MATCH(job_objective,%s,0))", litre, litre, on(sheetInputs, l.objectiveList.column(colValue))), r.objective).shown("#,##0.00##"),
 			count(r.order))
@@ -180,11 +180,11 @@ func (l *layout) aheadCells(g *grid, row, litre int, r *routeModel) {
 	}
 	same := fmt.Sprintf("(%s=C%d)", in(l.rankRows, rankContest), row)
 	objective, cost := in(l.rankRows, rankObjective), in(l.litreRows, litreCost)
-	level := fmt.Sprintf("(ABS(%s-I%d)<=job_tie)", objective, row)
+	level := fmt.Sprintf("(ABS(%s-I%d)<=job_tie*I%d)", objective, row, row)
 	ahead := []string{
-		fmt.Sprintf("SUMPRODUCT(%s*(%s<I%d-job_tie))", same, objective, row),
-		fmt.Sprintf("SUMPRODUCT(%s*%s*(%s<F%d-job_tie))", same, level, cost, litre),
-		fmt.Sprintf("SUMPRODUCT(%s*%s*(ABS(%s-F%d)<=job_tie)*(%s<J%d))", same, level, cost, litre, in(l.rankRows, rankOrder), row),
+		fmt.Sprintf("SUMPRODUCT(%s*(%s<I%d*(1-job_tie)))", same, objective, row),
+		fmt.Sprintf("SUMPRODUCT(%s*%s*(%s<F%d*(1-job_tie)))", same, level, cost, litre),
+		fmt.Sprintf("SUMPRODUCT(%s*%s*(ABS(%s-F%d)<=job_tie*F%d)*(%s<J%d))", same, level, cost, litre, litre, in(l.rankRows, rankOrder), row),
 	}
 	for i, f := range ahead {
 		g.put(rankAhead+i, row, derived(f, float64(r.ahead[i])).shown("0"))

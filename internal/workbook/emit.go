@@ -36,7 +36,7 @@ func (w *file) write(out io.Writer) (err error) {
 	f := excelize.NewFile()
 	defer func() { err = errors.Join(err, f.Close()) }()
 	f.SetZipWriter(func(out io.Writer) excelize.ZipWriter {
-		return &parts{out: out, content: map[string]*bytes.Buffer{}, patch: patchPart}
+		return &parts{out: out, content: map[string]*bytes.Buffer{}, patch: w.patchPart}
 	})
 	if err := w.prepare(f); err != nil {
 		return err
@@ -108,6 +108,9 @@ type emitter struct {
 }
 
 func (e *emitter) sheet(g *grid) error {
+	if err := e.view(g); err != nil {
+		return err
+	}
 	sw, err := e.file.NewStreamWriter(g.name)
 	if err != nil {
 		return err
@@ -124,6 +127,11 @@ func (e *emitter) sheet(g *grid) error {
 	}
 	for i, row := range g.rows {
 		if err := e.row(sw, g, i+1, row); err != nil {
+			return err
+		}
+	}
+	for _, m := range g.merged {
+		if err := sw.MergeCell(at(m.first, m.row), at(m.last, m.row)); err != nil {
 			return err
 		}
 	}
@@ -189,10 +197,25 @@ func (g *grid) height(row int) float64 {
 		p := paints[c.look]
 		size = max(size, p.size)
 		if s, ok := c.value.(string); ok && p.wrap && i < len(g.widths) {
-			lines = max(lines, wrapped(s, g.widths[i]*charsPerUnit))
+			lines = max(lines, wrapped(s, g.roomFor(i+1, row)*charsPerUnit))
 		}
 	}
 	return min(tallest, float64(lines)*lineHeight*size/10+1.5)
+}
+
+// roomFor is the width that a cell's text has, in units of column width.
+func (g *grid) roomFor(column, row int) float64 {
+	last := column
+	for _, m := range g.merged {
+		if m.row == row && m.first == column {
+			last = m.last
+		}
+	}
+	width := 0.0
+	for _, w := range g.widths[column-1 : last] {
+		width += w
+	}
+	return width
 }
 
 // wrapped counts the lines of a text in a column of the given characters.

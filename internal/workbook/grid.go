@@ -92,7 +92,11 @@ type grid struct {
 	limits        []limit
 	flags         []flag
 	charts        []placed
+	merged        []merge
 }
+
+// merge is a run of cells in a row that holds one text. Numbers are never merged.
+type merge struct{ row, first, last int }
 
 // limit is a data validation of one or more input cells.
 type limit struct {
@@ -123,6 +127,17 @@ func (g *grid) putRow(row int, cells ...cell) {
 		g.put(i+1, row, c)
 	}
 }
+
+// across writes running text over several columns.
+func (g *grid) across(first, last, row int, s string) {
+	for column := first; column <= last; column++ {
+		g.put(column, row, blank(words))
+	}
+	g.put(first, row, text(words, oneLine(s)))
+	g.merged = append(g.merged, merge{row, first, last})
+}
+
+func oneLine(s string) string { return strings.Join(strings.Fields(s), " ") }
 
 func (g *grid) last() int { return len(g.rows) }
 

@@ -22,10 +22,7 @@ const (
 var inputColumns = []column{{name: "Name"}, {name: "Quantity"}, {name: "Value"}, {name: "Unit"}, {name: "Source or note"},
 	{name: "Value in the run"}, {name: "When edited"}, {name: "State"}}
 
-const (
-	waterTolerance = 0.001 // mg/kg: closer than this to the limit counts as at the limit
-	lowestPlotted  = 0.1   // mg/kg: a log axis has no zero
-)
+const lowestPlotted = 0.1 // mg/kg: a log axis has no zero
 
 func (l *layout) inputs() *grid {
 	g := newGrid(sheetInputs, "What the job asks for. Blue cells may be edited; the column State says what follows the edit and what needs a new run.",
@@ -72,10 +69,8 @@ func (l *layout) runInputs(g *grid) {
 	l.objectiveRow = row
 	fact(g, "", "Currency", text(program, j.Currency), "", "job file; all money is in this currency, costs positive, credits negative")
 	fact(g, "", "Assurance asked for", number(j.Assurance*100, "%").shown("0"), "%", "job file; chance of target that a recommended route needs")
-	row = fact(g, "job_tie", "Level when closer than", number(tie, "unit of the objective").shown("0E+00"), "see note", "in the unit of the objective or in money per litre; below it there is only rounding")
+	row = fact(g, "job_tie", "Level within a share of", number(tie, "1").shown("0E+00"), "1", "closer than this there is only rounding; a route at the limit has reached it, and routes count as level: then the cost per litre, then the route id decides")
 	l.name("job_tie", sheetInputs, colValue, row)
-	row = fact(g, "job_water_tolerance", "At the limit when closer than", number(waterTolerance, "mg/kg"), "mg/kg", "the program stops a step at the limit within this")
-	l.name("job_water_tolerance", sheetInputs, colValue, row)
 	row = fact(g, "job_lowest_plotted", "Lowest water drawn in charts", number(lowestPlotted, "mg/kg"), "mg/kg", "the chart has a logarithmic axis, which has no zero")
 	l.name("job_lowest_plotted", sheetInputs, colValue, row)
 	notes := map[string]string{"cost": "cost per litre delivered in spec", "time": "hours in total, attended or not",

@@ -131,7 +131,7 @@ func newRoute(no int, lot *lotModel, route study.Route, book costs.Book) (*route
 	r.perLitre = r.total / r.litres
 	r.perYear = r.total * lot.batches
 	r.waterOut = tidy(run.WaterOut * mgPerKg)
-	r.reaches = lot.shown && r.waterOut <= lot.acceptAt+waterTolerance
+	r.reaches = lot.shown && r.waterOut <= lot.acceptAt*(1+tie)
 	r.values = []float64{r.perLitre, tidy(run.HoursTotal), tidy(run.WasteKg), tidy(run.EnergyKWh)}
 	return r, nil
 }
@@ -157,8 +157,8 @@ func newLine(line costs.Line, batches float64, book costs.Book) (lineModel, erro
 	return l, nil
 }
 
-// tie is the difference under which two routes count as level, in the unit of
-// what is compared: below it there is only the noise of the arithmetic.
+// tie is the share of a value within which two routes count as level: below it
+// there is only the noise of the arithmetic.
 const tie = 1e-9
 
 // rankRoutes ranks those that reach the target: by the objective, then by cost per
@@ -177,12 +177,12 @@ func rankRoutes(list []*routeModel, objective int) {
 			if !b.reaches {
 				continue
 			}
-			levelObjective := abs(b.objective-a.objective) <= tie
-			levelCost := levelObjective && abs(b.perLitre-a.perLitre) <= tie
+			levelObjective := abs(b.objective-a.objective) <= tie*a.objective
+			levelCost := levelObjective && abs(b.perLitre-a.perLitre) <= tie*a.perLitre
 			switch {
-			case b.objective < a.objective-tie:
+			case b.objective < a.objective*(1-tie):
 				a.ahead[0]++
-			case levelObjective && b.perLitre < a.perLitre-tie:
+			case levelObjective && b.perLitre < a.perLitre*(1-tie):
 				a.ahead[1]++
 			case levelCost && b.order < a.order:
 				a.ahead[2]++

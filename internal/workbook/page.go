@@ -17,12 +17,17 @@ const (
 	pointsPerPadding = 3.75 // added to each column
 )
 
-// page sets how the sheet prints: landscape, one page wide, headings repeated.
-func (e *emitter) page(g *grid) error {
-	fit, color := true, g.tab
-	if err := e.file.SetSheetProps(g.name, &excelize.SheetPropsOptions{FitToPage: &fit, TabColorRGB: &color}); err != nil {
+// view sets what stands before the rows in the file: it must come before them.
+func (e *emitter) view(g *grid) error {
+	fit, colour, gridLines := true, g.tab, false
+	if err := e.file.SetSheetProps(g.name, &excelize.SheetPropsOptions{FitToPage: &fit, TabColorRGB: &colour}); err != nil {
 		return err
 	}
+	return e.file.SetSheetView(g.name, 0, &excelize.ViewOptions{ShowGridLines: &gridLines})
+}
+
+// page sets how the sheet prints: landscape, one page wide, headings repeated.
+func (e *emitter) page(g *grid) error {
 	size, landscape, wide, tall := paperA4, "landscape", 1, 0
 	if err := e.file.SetPageLayout(g.name, &excelize.PageLayoutOptions{
 		Size: &size, Orientation: &landscape, FitToWidth: &wide, FitToHeight: &tall}); err != nil {
@@ -34,10 +39,6 @@ func (e *emitter) page(g *grid) error {
 		return err
 	}
 	if err := e.file.SetHeaderFooter(g.name, &excelize.HeaderFooterOptions{OddFooter: "&L&A&RPage &P of &N"}); err != nil {
-		return err
-	}
-	gridLines := false
-	if err := e.file.SetSheetView(g.name, 0, &excelize.ViewOptions{ShowGridLines: &gridLines}); err != nil {
 		return err
 	}
 	return e.printRange(g)

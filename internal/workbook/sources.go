@@ -15,17 +15,11 @@ func (l *layout) sources() *grid {
 	row := g.table(g.next(), "References", []column{{name: "Source id"}, {name: "Reference"}, {}, {}, {}})
 	for _, s := range l.report.Sources {
 		g.putRow(row, text(words, s.ID))
-		g.runOn(2, row, s.Reference)
+		g.across(2, len(g.widths), row, s.Reference)
 		row++
 	}
 	if len(l.report.Sources) == 0 {
 		g.put(1, row, text(plain, "none"))
 	}
 	return g
-}
-
-// runOn writes text that may be longer than the columns to its right: it is cut
-// into as many rows of height as it needs.
-func (g *grid) runOn(column, row int, s string) {
-	g.put(column, row, text(plain, oneLine(s)))
 }

@@ -161,7 +161,7 @@ func (l *layout) resultBlock(g *grid) {
 			number(run.HoursAttended, "h").shown(decimals(2)), number(run.EnergyKWh, "kWh").shown(decimals(2)),
 			number(run.CoolingWaterL, "L").shown(decimals(1)), number(run.SolventLostL, "L").shown(decimals(3)),
 			number(run.LitresDelivered, "L").shown(decimals(3)), number(agent, "kg").shown(decimals(3)),
-			number(run.WasteKg, "kg").shown(decimals(3)), number(run.CO2eKg, "kg CO2e").shown(decimals(2)))...)
+			number(run.WasteKg, "kg").shown(decimals(3)), finite(run.CO2eKg, "kg CO2e", decimals(2)))...)
 		g.put(stepWhy, row, text(words, r.Label))
 		g.put(stepState, row, l.stateLink(r.lot))
 	}
@@ -210,9 +210,6 @@ func (l *layout) settingBlock(g *grid) {
 		}
 		for i, word := range s.Sieve {
 			put(fmt.Sprintf("sieve of soak %d", i+1), text(program, word), "")
-		}
-		if s.StillCharges > 0 {
-			put("charges of the still", count(s.StillCharges), "1")
 		}
 	}
 }

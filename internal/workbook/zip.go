@@ -73,12 +73,12 @@ func partOrder(name string) int {
 }
 
 // patchPart puts right what the writing library leaves open.
-func patchPart(name string, part []byte) ([]byte, error) {
+func (w *file) patchPart(name string, part []byte) ([]byte, error) {
 	switch {
 	case name == contentTypes:
 		return sortDefaults(part), nil
 	case strings.HasPrefix(name, "xl/charts/chart"):
-		return patchChart(part)
+		return patchChart(part, w.valuesAt)
 	}
 	return part, nil
 }

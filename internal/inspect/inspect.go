@@ -1,0 +1,150 @@
+// Package inspect puts together what the models say of one solvent and water:
+// boiling, azeotrope, solubility, and how far a trap can dry.
+package inspect
+
+import (
+	"fmt"
+	"math"
+	"slices"
+	"strings"
+
+	"parch/catalog"
+	"parch/internal/thermo"
+)
+
+// Sheet is what is known of a solvent at a pressure and a receiver temperature.
+type Sheet struct {
+	Solvent       *catalog.Solvent
+	PressurePa    float64
+	ReceiverK     float64
+	BoilingK      float64
+	Azeotrope     thermo.Azeotrope
+	AzeotropeMass float64 // kg/kg water in its vapour; NaN where there is none
+	Solubility    []Solubility
+	GammaInfinite float64 // of water in the solvent at 25 °C
+	Floor         thermo.Floor
+	Pairs         []Pair
+	Sources       []catalog.Source
+	Notes         []string
+}
+
+// Solubility is the water that the solvent holds at a temperature, kg/kg; NaN
+// where the two mix in all proportions.
+type Solubility struct{ TempK, Water float64 }
+
+// Pair is what the agent matrix says of a drying agent.
+type Pair struct {
+	Agent string
+	catalog.Verdict
+}
+
+// kelvinAt0C is 0 °C in kelvin.
+const kelvinAt0C = 273.15
+
+// Solvent computes the sheet of a solvent.
+func Solvent(c *catalog.Catalog, s *catalog.Solvent, pressurePa, receiverK float64) (*Sheet, error) {
+	if err := thermo.CheckPressure(pressurePa); err != nil {
+		return nil, err
+	}
+	water, ok := c.Solvents["water"]
+	if !ok || s.Water == nil {
+		return nil, fmt.Errorf("no data on water in %s", s.Name)
+	}
+	m := &thermo.Mixture{Water: &water.Pure, Solvent: &s.Pure, NRTL: s.Water.NRTL}
+	sheet := &Sheet{Solvent: s, PressurePa: pressurePa, ReceiverK: receiverK, GammaInfinite: m.GammaInfinite(25 + kelvinAt0C)}
+	var err error
+	if sheet.BoilingK, err = thermo.Boil(&s.Pure, pressurePa); err != nil {
+		return nil, err
+	}
+	if sheet.Azeotrope, err = m.FindAzeotrope(pressurePa); err != nil {
+		return nil, err
+	}
+	sheet.AzeotropeMass = math.NaN()
+	if sheet.Azeotrope.Kind != thermo.NoAzeotrope {
+		sheet.AzeotropeMass = m.MassFraction(sheet.Azeotrope.YWater)
+	}
+	if sheet.Solubility, err = solubility(m, sheet.BoilingK); err != nil {
+		return nil, err
+	}
+	if sheet.Floor, err = m.TrapFloor(receiverK, pressurePa); err != nil {
+		return nil, err
+	}
+	sheet.Pairs = pairs(c, s)
+	sheet.Sources = sources(c, s)
+	sheet.Notes = notes(sheet)
+	return sheet, nil
+}
+
+// solubility goes from 0 to 80 °C in steps of 10 as far as the solvent is liquid.
+func solubility(m *thermo.Mixture, boilingK float64) (table []Solubility, err error) {
+	for celsius := 0; celsius <= 80; celsius += 10 {
+		tK := float64(celsius) + kelvinAt0C
+		if tK < m.Solvent.MeltingK || tK > boilingK {
+			continue
+		}
+		holds, partly, err := m.Solubility(tK)
+		if err != nil {
+			return nil, err
+		}
+		if !partly {
+			holds = math.NaN()
+		}
+		table = append(table, Solubility{tK, holds})
+	}
+	return table, nil
+}
+
+func pairs(c *catalog.Catalog, s *catalog.Solvent) (list []Pair) {
+	for key := range c.Agents {
+		if v, ok := c.Verdict(s, key); ok {
+			list = append(list, Pair{key, v})
+		}
+	}
+	slices.SortFunc(list, func(a, b Pair) int { return strings.Compare(a.Agent, b.Agent) })
+	return list
+}
+
+// sources are those that the numbers of the sheet rest on, sorted by id.
+func sources(c *catalog.Catalog, s *catalog.Solvent) []catalog.Source {
+	ids := []string{
+		s.BoilingPoint.Source, s.MeltingPoint.Source, s.VapourPressure.Source, s.Density.Source, s.HeatOfVaporization.Source,
+		s.Water.Source, s.Hazards.Source,
+	}
+	for _, v := range []*catalog.Value{s.FlashPoint, s.Autoignition} {
+		if v != nil {
+			ids = append(ids, v.Source)
+		}
+	}
+	slices.Sort(ids)
+	var list []catalog.Source
+	for _, id := range slices.Compact(ids) {
+		if source, ok := c.Sources[id]; ok {
+			list = append(list, source)
+		}
+	}
+	return list
+}
+
+func notes(s *Sheet) (list []string) {
+	pair := s.Solvent.Water
+	outside := func(what string, tK float64) {
+		if pair.TMaxK > 0 && (tK < pair.TMinK || tK > pair.TMaxK) {
+			list = append(list, fmt.Sprintf("%s, %.0f °C, lies outside the %.0f to %.0f °C that the model of water and %s was fitted to",
+				what, tK-kelvinAt0C, pair.TMinK-kelvinAt0C, pair.TMaxK-kelvinAt0C, s.Solvent.Name))
+		}
+	}
+	outside("the boiling point", s.BoilingK)
+	if s.Azeotrope.Kind != thermo.NoAzeotrope {
+		outside("the azeotrope", s.Azeotrope.TempK)
+	}
+	if s.Floor.Return != thermo.None {
+		outside("the receiver", s.ReceiverK)
+	}
+	if band := pair.SolubilityBand; band > 1 {
+		list = append(list, fmt.Sprintf("published solubilities scatter by a factor of %.3g; the trap's floor shares that band", band))
+	}
+	if s.Solvent.VapourPressure.Extrapolated(s.BoilingK) {
+		list = append(list, "the boiling point lies outside the range of the vapour pressure curve")
+	}
+	return list
+}

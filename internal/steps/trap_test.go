@@ -1,0 +1,233 @@
+package steps_test
+
+import (
+	"errors"
+	"math"
+	"testing"
+
+	"pgregory.net/rapid"
+
+	"parch/internal/steps"
+	"parch/internal/thermo"
+)
+
+const atmospherePa = 101325
+
+func equilibrium(t testing.TB, solvent string, receiverC float64) *steps.TrapEquilibrium {
+	t.Helper()
+	eq, err := steps.NewTrapEquilibrium(mixture(t, solvent), receiverC+273.15, atmospherePa)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return eq
+}
+
+// byFineSteps integrates pot and receiver in equal small portions of vapour
+// (explicit midpoint), each condensed, split by the lever rule and the organic
+// layer returned: the balances as they stand, without the straight line and the
+// quadrature of the program.
+func byFineSteps(t *testing.T, eq *steps.TrapEquilibrium, feed steps.Lot, reach float64, r steps.TrapRig) (boiledMol, heatJ, waterRemovedKg float64) {
+	m := eq.Mixture
+	water, solvent := feed.WaterKg/m.Water.MolarMassKgPerMol, feed.SolventKg/m.Solvent.MolarMassKgPerMol
+	total := water + solvent
+	l := eq.Floor.Layers
+	vapour := func(water, solvent float64) thermo.Vapour {
+		x := water / (water + solvent)
+		if a := eq.Azeotrope; a.Kind == thermo.Heterogeneous && x > a.Layers.XOrganic {
+			return thermo.Vapour{TempK: a.TempK, YWater: a.YWater}
+		}
+		v, err := m.BubbleFrom(x, eq.PressurePa, 350)
+		if err != nil {
+			t.Fatal(err)
+		}
+		return v
+	}
+	latent := func(v thermo.Vapour) float64 {
+		return v.YWater*m.Water.HeatOfVaporizationJ.At(v.TempK) + (1-v.YWater)*m.Solvent.HeatOfVaporizationJ.At(v.TempK)
+	}
+	start := water
+	v := vapour(water, solvent)
+	fillMol := r.FillVolumeM3 / m.MolarVolume(v.YWater, eq.ReceiverK)
+	const fillSteps = 2000
+	for range fillSteps {
+		dn := fillMol / fillSteps
+		v = vapour(water, solvent)
+		water, solvent = water-dn*v.YWater, solvent-dn*(1-v.YWater)
+		boiledMol += dn
+		heatJ += dn * latent(v)
+	}
+	dn := total / 100000
+	for m.MassFraction(water/(water+solvent)) > reach {
+		v = vapour(water, solvent)
+		efficiency := 1.0
+		if m.MassFraction(water/(water+solvent)) < rules.EfficiencyBelow {
+			efficiency = rules.Efficiency
+		}
+		change := func(v thermo.Vapour) (dw, ds float64) {
+			aqueous := (v.YWater - l.XOrganic) / (l.XAqueous - l.XOrganic) * dn * efficiency
+			return aqueous * l.XAqueous, aqueous * (1 - l.XAqueous)
+		}
+		dw, ds := change(v)
+		v = vapour(water-dw/2, solvent-ds/2)
+		dw, ds = change(v)
+		water, solvent = water-dw, solvent-ds
+		mid := (v.TempK + eq.ReceiverK) / 2
+		returned := 1 - (v.YWater-l.XOrganic)/(l.XAqueous-l.XOrganic)
+		cp := l.XOrganic*m.Water.HeatCapacityJPerMolK.At(mid) + (1-l.XOrganic)*m.Solvent.HeatCapacityJPerMolK.At(mid)
+		boiledMol += dn
+		heatJ += dn * (latent(v) + returned*cp*(v.TempK-eq.ReceiverK))
+	}
+	return boiledMol, heatJ, (start - water) * m.Water.MolarMassKgPerMol
+}
+
+func TestTrapAgainstFineSteps(t *testing.T) {
+	for _, c := range []struct {
+		solvent              string
+		litres, water, reach float64
+		returns              string
+	}{
+		{"toluene", 18, 480e-6, 20e-6, "light"},
+		{"toluene", 5, 3000e-6, 50e-6, "light"}, // two liquids in the pot at first
+		{"cyclohexane", 10, 200e-6, 25e-6, "light"},
+		{"dichloromethane", 10, 1500e-6, 350e-6, "heavy"},
+		{"ethyl-acetate", 15, 30000e-6, 12000e-6, "light"},
+	} {
+		eq := equilibrium(t, c.solvent, 20)
+		feed := litres(eq.Mixture, c.litres, c.water)
+		r := rig(c.returns)
+		quick := rules
+		quick.ShortestRefluxS = 0 // so that time follows from the vapour alone
+		o, err := steps.RunTrap(eq, feed, c.reach, r, quick)
+		if err != nil {
+			t.Errorf("%s: %v", c.solvent, err)
+			continue
+		}
+		mol, heat, removed := byFineSteps(t, eq, feed, c.reach, r)
+		boilHours := heat / (r.HeaterW * r.HeatShare) / 3600
+		energyKWh := r.HeaterW * (boilHours + figure(o, "heat-up, each charge")) / 1e3
+		near(t, c.solvent+": water removed", o.Balance.WaterRemovedKg, removed, 0.01)
+		near(t, c.solvent+": reflux hours", figure(o, "reflux, each charge"), boilHours, 0.01)
+		near(t, c.solvent+": energy", o.EnergyKWh, energyKWh, 0.01)
+		if mol <= 0 {
+			t.Errorf("%s: nothing boiled", c.solvent)
+		}
+	}
+}
+
+func near(t *testing.T, what string, got, want, share float64) {
+	t.Helper()
+	if !(math.Abs(got/want-1) <= share) {
+		t.Errorf("%s = %.6g, want %.6g within %g %%", what, got, want, 100*share)
+	}
+}
+
+// A pot of two immiscible liquids boils at the constant azeotrope: what is
+// removed per mole of vapour does not change, so the vapour is in proportion.
+func TestTwoLiquidPotIsLinear(t *testing.T) {
+	eq := equilibrium(t, "toluene", 20)
+	vapour := func(water float64) float64 {
+		o, err := steps.RunTrap(eq, litres(eq.Mixture, 18, water), 4000e-6, rig("light"), rules)
+		if err != nil {
+			t.Fatal(err)
+		}
+		return figure(o, "vapour boiled up, each charge")
+	}
+	a, b, c := vapour(0.02), vapour(0.04), vapour(0.06)
+	near(t, "second step", c-b, b-a, 0.03) // the solvent shrinks by 2 % between the steps
+}
+
+// 480 to 20 mg/kg in toluene needs about 4 % of the batch as vapour, and the
+// azeotrope boils near 84 °C (common practice, no source).
+func TestTolueneNeedsLittleVapour(t *testing.T) {
+	eq := equilibrium(t, "toluene", 20)
+	o, err := steps.RunTrap(eq, litres(eq.Mixture, 18, 480e-6), 20e-6, rig("light"), rules)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if share := figure(o, "vapour as a share of the charge"); share < 2.5 || share > 6 {
+		t.Errorf("vapour is %.3g %% of the charge", share)
+	}
+	if o.HoursTotal < figure(o, "heat-up, each charge")+1 {
+		t.Errorf("%.3g h is less than heat-up and one hour of reflux", o.HoursTotal)
+	}
+}
+
+func TestTrapNeverClaimsLessThanPractice(t *testing.T) {
+	eq := equilibrium(t, "toluene", 20)
+	for _, litre := range []float64{0.5, 2, 18} {
+		o, err := steps.RunTrap(eq, litres(eq.Mixture, litre, 200e-6), 1e-6, rig("light"), rules)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if w := o.Out.Water(); w < 20e-6*(1-1e-9) {
+			t.Errorf("%g L: outlet %.3g mg/kg", litre, w*1e6)
+		}
+		if o.Why != steps.AtPractice || !(o.Floor < 6e-6) {
+			t.Errorf("%g L stops for %q with a floor of %.3g mg/kg", litre, o.Why, o.Floor*1e6)
+		}
+	}
+}
+
+func TestTrapRefusals(t *testing.T) {
+	for _, solvent := range []string{"tetrahydrofuran", "acetonitrile"} {
+		if _, err := steps.NewTrapEquilibrium(mixture(t, solvent), 298.15, atmospherePa); !errors.Is(err, steps.ErrNoTrap) {
+			t.Errorf("%s: %v, want that no trap works", solvent, err)
+		}
+	}
+	eq := equilibrium(t, "dichloromethane", 15)
+	if _, err := steps.RunTrap(eq, litres(eq.Mixture, 5, 1000e-6), 400e-6, rig("light"), rules); !errors.Is(err, steps.ErrNoTrap) {
+		t.Errorf("a light return for dichloromethane: %v", err)
+	}
+}
+
+// Water, solvent and heat close, whatever the lot.
+func TestTrapBalances(t *testing.T) {
+	returns := map[string]string{"toluene": "light", "cyclohexane": "light", "dichloromethane": "heavy", "ethyl-acetate": "light"}
+	rapid.Check(t, func(rt *rapid.T) {
+		solvent := rapid.SampledFrom([]string{"toluene", "cyclohexane", "dichloromethane", "ethyl-acetate"}).Draw(rt, "solvent")
+		receiver := rapid.Float64Range(7.5, 30).Draw(rt, "receiver")
+		eq, err := steps.NewTrapEquilibrium(mixture(t, solvent), receiver+273.15, rapid.Float64Range(90e3, 110e3).Draw(rt, "P"))
+		if err != nil {
+			rt.Fatal(err)
+		}
+		water := math.Exp(rapid.Float64Range(math.Log(20e-6), math.Log(0.2)).Draw(rt, "ln w"))
+		goal := water * rapid.Float64Range(0.001, 1).Draw(rt, "goal")
+		r := rig(returns[solvent])
+		r.Charges = rapid.IntRange(1, 4).Draw(rt, "charges")
+		feed := litres(eq.Mixture, rapid.Float64Range(0.5, 60).Draw(rt, "litres"), water)
+		o, err := steps.RunTrap(eq, feed, goal, r, rules)
+		if errors.Is(err, steps.ErrNoTrap) {
+			return
+		}
+		if err != nil {
+			rt.Fatal(err)
+		}
+		b := o.Balance
+		closes(rt, "water", b.WaterInKg, b.WaterOutKg+b.WaterRemovedKg)
+		closes(rt, "solvent", b.SolventInKg, b.SolventOutKg+b.SolventRemovedKg)
+		closes(rt, "heat", b.HeatInJ, b.HeatUsedJ)
+		// a pot wetter than its azeotrope grows wetter while the receiver fills
+		if eq.Mixture.MoleFraction(water) < eq.Azeotrope.YWater && o.Out.Water() > water*(1+1e-9) {
+			rt.Fatalf("wetter out (%g) than in (%g)", o.Out.Water(), water)
+		}
+		if o.Out.Water() < math.Min(water, o.Floor)*(1-1e-9) {
+			rt.Fatalf("below the floor: %g < %g", o.Out.Water(), o.Floor)
+		}
+	})
+}
+
+func closes(t *rapid.T, what string, in, out float64) {
+	if math.Abs(in-out) > 1e-8*math.Abs(in) {
+		t.Fatalf("%s: %g in, %g accounted for", what, in, out)
+	}
+}
+
+func BenchmarkTrap(b *testing.B) {
+	eq := equilibrium(b, "toluene", 20)
+	feed := litres(eq.Mixture, 18, 480e-6)
+	for b.Loop() {
+		if _, err := steps.RunTrap(eq, feed, 20e-6, rig("light"), rules); err != nil {
+			b.Fatal(err)
+		}
+	}
+}

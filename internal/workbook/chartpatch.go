@@ -1,0 +1,152 @@
+package workbook
+
+import (
+	"bytes"
+	"encoding/xml"
+	"fmt"
+	"regexp"
+	"strconv"
+	"strings"
+
+	"github.com/xuri/excelize/v2"
+)
+
+// patchChart puts right what the chart writer leaves open: bars that run from top
+// to bottom have their value axis at the bottom, and every series carries its
+// values, for readers that do not look them up. A fragment that is not found as
+// expected is an error: the chart would look different from what was checked.
+func patchChart(part []byte, values func(reference string) ([]cell, error)) ([]byte, error) {
+	var err error
+	if bytes.Contains(part, []byte(`<barDir val="bar">`)) {
+		if part, err = turnBars(part); err != nil {
+			return nil, err
+		}
+	}
+	if part, err = cacheText(part, values); err != nil {
+		return nil, err
+	}
+	return cacheNumbers(part, values)
+}
+
+// turnBars moves the value axis of horizontal bars to the bottom.
+func turnBars(part []byte) ([]byte, error) {
+	i := bytes.Index(part, []byte("<valAx>"))
+	if i < 0 {
+		return nil, fmt.Errorf("no value axis")
+	}
+	categories, valueAxis := part[:i], part[i:]
+	categories, err := replaceOnce(categories, `<axPos val="t">`, `<axPos val="l">`)
+	if err != nil {
+		return nil, err
+	}
+	for _, change := range [][2]string{
+		{`<axPos val="l">`, `<axPos val="b">`},
+		{`<crosses val="autoZero">`, `<crosses val="max">`},
+		{`rot="-5400000" spcFirstLastPara="false" vert="horz"`, `rot="0" spcFirstLastPara="false" vert="horz"`},
+	} {
+		if valueAxis, err = replaceOnce(valueAxis, change[0], change[1]); err != nil {
+			return nil, err
+		}
+	}
+	return append(bytes.Clone(categories), valueAxis...), nil
+}
+
+func replaceOnce(part []byte, old, fresh string) ([]byte, error) {
+	if n := bytes.Count(part, []byte(old)); n != 1 {
+		return nil, fmt.Errorf("%q stands %d times in a chart, expected once", old, n)
+	}
+	return bytes.Replace(part, []byte(old), []byte(fresh), 1), nil
+}
+
+var (
+	textReference   = regexp.MustCompile(`<strRef><f>([^<]*)</f></strRef>`)
+	numberReference = regexp.MustCompile(`<numRef><f>([^<]*)</f><numCache><formatCode></formatCode></numCache></numRef>`)
+)
+
+func cacheText(part []byte, values func(string) ([]cell, error)) ([]byte, error) {
+	return cache(part, textReference, values, func(reference, points string) string {
+		return "<strRef><f>" + reference + "</f><strCache>" + points + "</strCache></strRef>"
+	})
+}
+
+func cacheNumbers(part []byte, values func(string) ([]cell, error)) ([]byte, error) {
+	return cache(part, numberReference, values, func(reference, points string) string {
+		return "<numRef><f>" + reference + "</f><numCache><formatCode>General</formatCode>" + points + "</numCache></numRef>"
+	})
+}
+
+func cache(part []byte, pattern *regexp.Regexp, values func(string) ([]cell, error), wrap func(reference, points string) string) ([]byte, error) {
+	if !pattern.Match(part) {
+		return nil, fmt.Errorf("no reference like %s in a chart", pattern)
+	}
+	var failed error
+	out := pattern.ReplaceAllFunc(part, func(found []byte) []byte {
+		reference := string(pattern.FindSubmatch(found)[1])
+		cells, err := values(reference)
+		if err != nil {
+			failed = err
+			return found
+		}
+		return []byte(wrap(reference, points(cells)))
+	})
+	return out, failed
+}
+
+func points(cells []cell) string {
+	var b strings.Builder
+	fmt.Fprintf(&b, `<ptCount val="%d"></ptCount>`, len(cells))
+	for i, c := range cells {
+		var v string
+		switch x := c.value.(type) {
+		case float64:
+			v = strconv.FormatFloat(x, 'g', -1, 64)
+		case string:
+			var escaped bytes.Buffer
+			_ = xml.EscapeText(&escaped, []byte(clean(x)))
+			v = escaped.String()
+		default:
+			continue
+		}
+		fmt.Fprintf(&b, `<pt idx="%d"><v>%s</v></pt>`, i, v)
+	}
+	return b.String()
+}
+
+// valuesAt looks up the cells of a reference such as Costs!$D$5:$D$9. A cell that
+// does not exist is an error: the chart would draw nothing.
+func (w *file) valuesAt(reference string) ([]cell, error) {
+	sheet, place, ok := strings.Cut(reference, "!")
+	if !ok {
+		return nil, fmt.Errorf("%q names no sheet", reference)
+	}
+	from, to, ranged := strings.Cut(strings.ReplaceAll(place, "$", ""), ":")
+	if !ranged {
+		to = from
+	}
+	c1, r1, err := excelize.CellNameToCoordinates(from)
+	if err != nil {
+		return nil, err
+	}
+	c2, r2, err := excelize.CellNameToCoordinates(to)
+	if err != nil {
+		return nil, err
+	}
+	for _, g := range w.grids {
+		if g.name == sheet {
+			return g.cells(c1, r1, c2, r2)
+		}
+	}
+	return nil, fmt.Errorf("%q: no such sheet", reference)
+}
+
+func (g *grid) cells(c1, r1, c2, r2 int) (out []cell, err error) {
+	for r := r1; r <= r2; r++ {
+		for c := c1; c <= c2; c++ {
+			if r > len(g.rows) || c > len(g.rows[r-1]) || g.rows[r-1][c-1].value == nil {
+				return nil, fmt.Errorf("sheet %s: nothing in %s to draw", g.name, at(c, r))
+			}
+			out = append(out, g.rows[r-1][c-1])
+		}
+	}
+	return out, nil
+}
