@@ -205,9 +205,9 @@ func andrade(c *[7]float64, t float64) float64 { return math.Exp(c[0] + c[1]/t) 
 func power(t, n float64) float64 {
 	switch n {
 	case 0:
-		return 1(c, t), true
+		return 1
 	case 1:
-		return t(c, t), true
+		return t
 	case 2:
 		return t * t
 	case 6:
