@@ -4,6 +4,8 @@ package assay
 import (
 	"fmt"
 	"math"
+
+	"parch/internal/quantity"
 )
 
 // Method is a Karl Fischer method: contents in kg/kg.
@@ -35,8 +37,8 @@ func Accept(target float64, m Method) Limit {
 	u := 2 * m.Repeatability / coverage / math.Sqrt(float64(m.Injections))
 	l := Limit{Uncertainty: u, AcceptAt: target - u}
 	if l.AcceptAt < m.DetectionLimit {
-		l.CannotShow = fmt.Sprintf("cannot be shown: %.3g mg/kg less the uncertainty of %.2g mg/kg (%s Karl Fischer, mean of %d) is below the detection limit of %.2g mg/kg",
-			target*1e6, u*1e6, m.Name, m.Injections, m.DetectionLimit*1e6)
+		l.CannotShow = fmt.Sprintf("cannot be shown: %s less the uncertainty of %s (%s Karl Fischer, mean of %d) is below the detection limit of %s",
+			quantity.FormatWater(target), quantity.FormatWater(u), m.Name, m.Injections, quantity.FormatWater(m.DetectionLimit))
 		l.AcceptAt = math.NaN()
 	}
 	return l

@@ -40,8 +40,10 @@ func flagsFirst(app *cli.App, args []string) ([]string, error) {
 			return nil, misused(fmt.Sprintf("--%s is given twice", name), "")
 		}
 		seen[name] = true
-		if takesValue(cmd, name) && !joined && i+1 < len(args) {
-			i++
+		if takesValue(cmd, name) && !joined {
+			if i++; i == len(args) {
+				return nil, misused(fmt.Sprintf("--%s needs a value", name), "")
+			}
 			flags = append(flags, args[i])
 		}
 	}
@@ -61,7 +63,6 @@ func takesValue(cmd *cli.Command, name string) bool {
 // The messages of the flag library that say which flag is wrong.
 var (
 	notDefined = regexp.MustCompile(`^flag provided but not defined: -(.*)$`)
-	noValue    = regexp.MustCompile(`^flag needs an argument: -(.*)$`)
 	badSwitch  = regexp.MustCompile(`^invalid boolean value "(.*)" for -([^:]*)`)
 )
 
@@ -74,9 +75,6 @@ func flagFailure(err error, flags []cli.Flag) error {
 			known = append(known, f.Names()...)
 		}
 		return misused(fmt.Sprintf("unknown flag --%s", m[1]), didYouMean(m[1], known, "--help lists the flags"))
-	}
-	if m := noValue.FindStringSubmatch(text); m != nil {
-		return misused(fmt.Sprintf("--%s needs a value", m[1]), "")
 	}
 	if m := badSwitch.FindStringSubmatch(text); m != nil {
 		return misused(fmt.Sprintf("--%s takes no value, but %q was given", m[2], m[1]), "")

@@ -65,6 +65,9 @@ func (p *program) runCompare(c *cli.Context) error {
 	if err != nil {
 		return failed(err)
 	}
+	if q.settings != "" && !q.quiet {
+		p.tunedAnew(q.settings, opts, r)
+	}
 	return p.deliver(c.Context, q, r)
 }
 
@@ -128,6 +131,22 @@ func (p *program) readSettings(path string) (study.Options, error) {
 	return study.Options{Settings: settings}, badFile(err)
 }
 
+// tunedAnew names the routes for which the earlier run has no settings.
+func (p *program) tunedAnew(from string, opts study.Options, r *study.Report) {
+	for i := range r.Lots {
+		l := &r.Lots[i]
+		var missing []string
+		for j := range l.Routes {
+			if _, ok := opts.Settings[l.Job.Name][l.Routes[j].ID]; !ok {
+				missing = append(missing, l.Routes[j].ID)
+			}
+		}
+		if len(missing) > 0 {
+			fmt.Fprintf(p.stderr, "%s has no settings for %s of %q: tuned anew\n", from, strings.Join(missing, ", "), l.Job.Name)
+		}
+	}
+}
+
 // deliver writes the files and prints the result. The result is printed even if
 // a file cannot be written: nothing that was computed is lost.
 func (p *program) deliver(ctx context.Context, q request, r *study.Report) error {
@@ -137,7 +156,7 @@ func (p *program) deliver(ctx context.Context, q request, r *study.Report) error
 	if err == nil {
 		opts, err = q.writeFiles(ctx, book.Bytes(), doc.Bytes())
 	}
-	return errors.Join(failed(err), failed(p.print(q, r, opts, doc.Bytes())), failed(unreached(r)))
+	return errors.Join(failed(err), failed(p.print(q, r, opts, doc.Bytes())), unreached(r))
 }
 
 func (q *request) writeFiles(ctx context.Context, book, doc []byte) (opts report.Options, err error) {
@@ -181,9 +200,9 @@ func unreached(r *study.Report) error {
 		switch {
 		case l.NothingToDo != "" || len(l.Routes) > 0 && l.Routes[0].Rank > 0:
 		case l.CannotShow != "":
-			lots = append(lots, fmt.Errorf("%s: no route can be shown to reach the target", l.Job.Name))
+			lots = append(lots, failed(fmt.Errorf("%s: no route can be shown to reach the target", l.Job.Name)))
 		default:
-			lots = append(lots, fmt.Errorf("%s: no route reaches the target", l.Job.Name))
+			lots = append(lots, failed(fmt.Errorf("%s: no route reaches the target", l.Job.Name)))
 		}
 	}
 	return errors.Join(lots...)

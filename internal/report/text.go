@@ -48,11 +48,14 @@ func priceNote(r *study.Report) string {
 			indicative++
 		}
 	}
-	if own+indicative == 0 {
-		return fmt.Sprintf("Money in %s.", r.Job.Currency)
+	note := fmt.Sprintf("Money in %s.", r.Job.Currency)
+	if own > 0 {
+		note += " " + count(float64(own), "price", "prices") + " of your own."
 	}
-	return fmt.Sprintf("Money in %s: %s of your own, %s of the catalog, to be checked before use.",
-		r.Job.Currency, count(float64(own), "price", "prices"), count(float64(indicative), "indicative price", "indicative prices"))
+	if indicative > 0 {
+		note += " " + count(float64(indicative), "indicative price", "indicative prices") + " of the catalog: check before use."
+	}
+	return note
 }
 
 func (p *page) lot(n int, r *study.Report, l *study.Lot) {

@@ -7,6 +7,7 @@ import (
 	"strings"
 
 	"parch/catalog"
+	"parch/internal/quantity"
 	"parch/internal/steps"
 )
 
@@ -118,7 +119,7 @@ func (c *Case) refuseSettle() (reason, source string) {
 	case !ok:
 		return fmt.Sprintf("nothing settles: water and %s form no second layer at %.0f °C", c.Solvent.Name, c.Job.Site.RoomK-273.15), c.Solvent.Water.Source
 	case c.Lot.FreeWaterM3 == 0 && c.Feed.Water() <= leastExcess*saturated:
-		return fmt.Sprintf("nothing settles: %s holds %.4g mg/kg at %.0f °C, the lot has %.4g", c.Solvent.Name, saturated*1e6, c.Job.Site.RoomK-273.15, c.Feed.Water()*1e6), c.Solvent.Water.Source
+		return fmt.Sprintf("nothing settles: %s holds %s at %.0f °C, the lot has %s", c.Solvent.Name, quantity.FormatWater(saturated), c.Job.Site.RoomK-273.15, quantity.FormatWater(c.Feed.Water())), c.Solvent.Water.Source
 	}
 	return "", ""
 }

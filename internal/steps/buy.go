@@ -3,6 +3,7 @@ package steps
 import (
 	"fmt"
 
+	"parch/internal/quantity"
 	"parch/internal/thermo"
 )
 
@@ -16,7 +17,7 @@ func RunBuy(m *thermo.Mixture, feed Lot, grade, attendedS, tempK float64) Outcom
 		In:   feed, Out: Lot{SolventKg: massKg * (1 - grade), WaterKg: massKg * grade, TempK: tempK},
 		Floor:         grade,
 		Why:           AtGrade,
-		WhyText:       fmt.Sprintf("grade: sold with at most %.3g mg/kg", grade*mgPerKg),
+		WhyText:       fmt.Sprintf("grade: sold with at most %s", quantity.FormatWater(grade)),
 		HoursTotal:    attendedS / secondsPerHour,
 		HoursAttended: attendedS / secondsPerHour,
 	}

@@ -54,12 +54,3 @@ func bottle(t testing.TB, solvent string, depth float64) steps.SoakRig {
 		Vessels: 1, AttendedS: 1440, WaterMolarM3: 18.9e-6,
 	}
 }
-
-func figure(o steps.Outcome, name string) float64 {
-	for _, f := range o.Figures {
-		if f.Name == name {
-			return f.Value
-		}
-	}
-	return -1
-}

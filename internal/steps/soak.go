@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"math"
 
+	"parch/internal/quantity"
 	"parch/internal/thermo"
 )
 
@@ -78,9 +79,10 @@ func Diffusivity(solvent *thermo.Pure, tK, waterMolarM3 float64) float64 {
 	return 7.4e-8 * math.Sqrt(molarMass) * tK / (viscosity * math.Pow(waterMolarM3*1e6, 0.6)) * 1e-4
 }
 
-// loading of the sorbent in equilibrium with a solution of water (kg/kg).
+// loading of the sorbent in equilibrium with a solution of water (kg/kg). Free
+// water beside the solution holds the activity at one.
 func (b *bath) loading(water float64) float64 {
-	pressure := b.m.Activity(water, b.rig.TempK) * b.psatWater
+	pressure := math.Min(1, b.m.Activity(water, b.rig.TempK)) * b.psatWater
 	return b.sorbent.CapacityShare * b.sorbent.Loading(pressure, b.rig.TempK)
 }
 
@@ -109,7 +111,7 @@ func (b *bath) balanced(lnHighest float64, surplus func(w float64) float64) (flo
 	}
 	lnW, err := thermo.Brent(func(lnW float64) float64 { return surplus(math.Exp(lnW)) }, math.Log(leastWater), lnHighest, 1e-13)
 	if err != nil {
-		return math.NaN(), fmt.Errorf("%w: %s holding %.3g g/100 g against %.3g mg/kg", ErrWetSieve, b.sorbent.Key, 100*b.sorbent.ResidualKgPerKg, b.feed.Water()*mgPerKg)
+		return math.NaN(), fmt.Errorf("%w: %s holding %.3g g/100 g against %s", ErrWetSieve, b.sorbent.Key, 100*b.sorbent.ResidualKgPerKg, quantity.FormatWater(b.feed.Water()))
 	}
 	return math.Exp(lnW), nil
 }
@@ -157,6 +159,8 @@ func (b *bath) dose(goal, timeS float64) (SoakDose, error) {
 	return b.exact(d, goal, timeS)
 }
 
+const leastDose = 1e-6 // kg/m3, the lower end of the search
+
 // exact finds the dose at which the balance holds with the equilibrium that
 // time and rate ask for:
 //
@@ -173,7 +177,7 @@ func (b *bath) exact(d SoakDose, goal, timeS float64) (SoakDose, error) {
 		taken := b.feed.SolventKg * (feed/(1-feed) - eq/(1-eq))
 		return dose*b.volumeM3*(b.loading(eq)-b.sorbent.ResidualKgPerKg) - taken
 	}
-	lnDose, err := thermo.Brent(spare, math.Log(1e-3*d.Dose), math.Log(d.Dose), 1e-12)
+	lnDose, err := thermo.Brent(spare, math.Log(leastDose), math.Log(d.Dose), 1e-12)
 	if err != nil {
 		return d, err
 	}

@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 
+	"parch/internal/quantity"
 	"parch/internal/thermo"
 )
 
@@ -92,18 +93,18 @@ func (b *bath) reason(goal, out, floor, timeS float64, dose SoakDose) (Stop, str
 	hours := timeS / secondsPerHour
 	switch {
 	case math.IsNaN(goal):
-		return AtTime, fmt.Sprintf("%.3g mg/kg after %.3g h", out*mgPerKg, hours)
+		return AtTime, fmt.Sprintf("%s after %.3g h", quantity.FormatWater(out), hours)
 	case dose.Enough:
-		return AtTarget, fmt.Sprintf("%.3g mg/kg in %.3g h; %s rules the dose", goal*mgPerKg, hours, ruling(dose))
+		return AtTarget, fmt.Sprintf("%s in %.3g h; %s rules the dose", quantity.FormatWater(goal), hours, ruling(dose))
 	case goal <= floor:
-		return AtFloor, fmt.Sprintf("floor: a sieve that still holds %.2g g/100 g leaves %.3g mg/kg, whatever the dose", b.sorbent.ResidualKgPerKg*100, floor*mgPerKg)
+		return AtFloor, fmt.Sprintf("floor: a sieve that still holds %.2g g/100 g leaves %s, whatever the dose", b.sorbent.ResidualKgPerKg*100, quantity.FormatWater(floor))
 	}
 	eq, err := b.equilibrium(dose.Dose * b.volumeM3)
 	if err != nil || eq >= goal {
 		return AtCapacity, fmt.Sprintf("capacity: %.3g g/L, the largest practical dose, holds too little", dose.Dose)
 	}
 	wait := math.Log((b.feed.Water()-eq)/(goal-eq)) / b.rate(dose.Dose) / secondsPerHour
-	return AtTime, fmt.Sprintf("time: no dose reaches %.3g mg/kg in %.3g h in a still vessel; stir, or wait %.0f h", goal*mgPerKg, hours, math.Ceil(wait))
+	return AtTime, fmt.Sprintf("time: no dose reaches %s in %.3g h in a still vessel; stir, or wait %.0f h", quantity.FormatWater(goal), hours, math.Ceil(wait))
 }
 
 // ruling names the larger of the two sizes of a dose.

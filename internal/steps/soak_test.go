@@ -55,7 +55,7 @@ func TestCapacityIsSeldomTheLimit(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	if used := figure(o, "water taken up") / (0.20 * 150); math.Abs(used-0.0144) > 0.0005 {
+	if used := o.Figure("water taken up") / (0.20 * 150); math.Abs(used-0.0144) > 0.0005 {
 		t.Errorf("%.2f %% of 20 g/100 g is used, want about 1.4 %%", 100*used)
 	}
 }
@@ -82,12 +82,12 @@ func TestDoseReachesItsGoal(t *testing.T) {
 		t.Fatal(err)
 	}
 	near(t, "water out", o.Out.Water(), 15e-6, 1e-6)
-	again, err := steps.SoakOver(m, feed, figure(o, "dose"), 72*3600, sieve3A(t, 0.02), bottle(t, "toluene", 0.15))
+	again, err := steps.SoakOver(m, feed, o.Figure("dose"), 72*3600, sieve3A(t, 0.02), bottle(t, "toluene", 0.15))
 	if err != nil {
 		t.Fatal(err)
 	}
 	near(t, "the same dose given", again.Out.Water(), o.Out.Water(), 1e-6)
-	if d := figure(o, "dose"); d < figure(o, "dose for capacity") || d < figure(o, "dose for speed") {
+	if d := o.Figure("dose"); d < o.Figure("dose for capacity") || d < o.Figure("dose for speed") {
 		t.Errorf("dose %g is under one of its two sizes", d)
 	}
 }

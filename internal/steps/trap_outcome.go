@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 
+	"parch/internal/quantity"
 	"parch/internal/thermo"
 )
 
@@ -104,13 +105,13 @@ func (b *boiling) coolingM3(refluxS float64) float64 {
 func (b *boiling) reason(goal float64, why Stop) string {
 	switch why {
 	case AtFloor:
-		return fmt.Sprintf("floor: the condensate of a pot at %.3g mg/kg no longer splits at %.0f °C; run to %.0f %% above it",
-			b.eq.Floor.Water*mgPerKg, b.eq.ReceiverK-273.15, 100*(floorMargin-1))
+		return fmt.Sprintf("floor: the condensate of a pot at %s no longer splits at %.0f °C; run to %.0f %% above it",
+			quantity.FormatWater(b.eq.Floor.Water), b.eq.ReceiverK-273.15, 100*(floorMargin-1))
 	case AtPractice:
-		return fmt.Sprintf("practical limit: droplets and moist air keep a trap's outlet at %.3g mg/kg or more, whatever its floor of %.2g mg/kg",
-			b.rules.LowestOutlet*mgPerKg, b.eq.Floor.Water*mgPerKg)
+		return fmt.Sprintf("practical limit: droplets and moist air keep a trap's outlet at %s or more, whatever its floor of %s",
+			quantity.FormatWater(b.rules.LowestOutlet), quantity.FormatWater(b.eq.Floor.Water))
 	default:
-		return fmt.Sprintf("hand-over at %.3g mg/kg reached", goal*mgPerKg)
+		return fmt.Sprintf("hand-over at %s reached", quantity.FormatWater(goal))
 	}
 }
 

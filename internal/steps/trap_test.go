@@ -104,9 +104,9 @@ func TestTrapAgainstFineSteps(t *testing.T) {
 		}
 		mol, heat, removed := byFineSteps(t, eq, feed, c.reach, r)
 		boilHours := heat / (r.HeaterW * r.HeatShare) / 3600
-		energyKWh := r.HeaterW * (boilHours + figure(o, "heat-up, each charge")) / 1e3
+		energyKWh := r.HeaterW * (boilHours + o.Figure("heat-up, each charge")) / 1e3
 		near(t, c.solvent+": water removed", o.Balance.WaterRemovedKg, removed, 0.01)
-		near(t, c.solvent+": reflux hours", figure(o, "reflux, each charge"), boilHours, 0.01)
+		near(t, c.solvent+": reflux hours", o.Figure("reflux, each charge"), boilHours, 0.01)
 		near(t, c.solvent+": energy", o.EnergyKWh, energyKWh, 0.01)
 		if mol <= 0 {
 			t.Errorf("%s: nothing boiled", c.solvent)
@@ -130,7 +130,7 @@ func TestTwoLiquidPotIsLinear(t *testing.T) {
 		if err != nil {
 			t.Fatal(err)
 		}
-		return figure(o, "vapour boiled up, each charge")
+		return o.Figure("vapour boiled up, each charge")
 	}
 	a, b, c := vapour(0.02), vapour(0.04), vapour(0.06)
 	near(t, "second step", c-b, b-a, 0.03) // the solvent shrinks by 2 % between the steps
@@ -144,10 +144,10 @@ func TestTolueneNeedsLittleVapour(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	if share := figure(o, "vapour as a share of the charge"); share < 2.5 || share > 6 {
+	if share := o.Figure("vapour as a share of the charge"); share < 2.5 || share > 6 {
 		t.Errorf("vapour is %.3g %% of the charge", share)
 	}
-	if o.HoursTotal < figure(o, "heat-up, each charge")+1 {
+	if o.HoursTotal < o.Figure("heat-up, each charge")+1 {
 		t.Errorf("%.3g h is less than heat-up and one hour of reflux", o.HoursTotal)
 	}
 }

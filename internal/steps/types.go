@@ -2,6 +2,8 @@
 // out, why it stops, and what it uses. Nothing here knows of money.
 package steps
 
+import "math"
+
 // Kind is the name of a step.
 type Kind string
 
@@ -132,4 +134,14 @@ type Outcome struct {
 type Figure struct {
 	Name, Unit string
 	Value      float64
+}
+
+// Figure returns a figure by name, NaN where the step has none of that name.
+func (o *Outcome) Figure(name string) float64 {
+	for _, f := range o.Figures {
+		if f.Name == name {
+			return f.Value
+		}
+	}
+	return math.NaN()
 }

@@ -12,6 +12,7 @@ import (
 	"parch/catalog"
 	"parch/internal/costs"
 	"parch/internal/job"
+	"parch/internal/quantity"
 	"parch/internal/routes"
 	"parch/internal/search"
 )
@@ -59,12 +60,12 @@ func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog
 	}
 	l := Lot{
 		Job: lot, Solvent: k.Solvent,
-		AcceptAt: k.Limit.AcceptAt, CannotShow: k.Limit.CannotShow, Uncertainty: k.Limit.Uncertainty, Injections: k.Assay.Injections,
+		AcceptAt: k.Limit.AcceptAt, CannotShow: k.Limit.CannotShow, Uncertainty: k.Limit.Uncertainty, Detection: k.Assay.DetectionLimit, Injections: k.Assay.Injections,
 		Warnings: lotWarnings(k),
 	}
 	if k.Dry() {
-		l.NothingToDo = fmt.Sprintf("nothing to do: the reading of %.4g mg/kg is at or below the %.4g mg/kg at which a target of %.4g mg/kg is accepted; it rests on that Karl Fischer reading of a clear sample",
-			lot.Water*1e6, k.Limit.AcceptAt*1e6, lot.Target*1e6)
+		l.NothingToDo = fmt.Sprintf("nothing to do: the reading of %s is at or below the %s at which a target of %s is accepted; it rests on that Karl Fischer reading of a clear sample",
+			quantity.FormatWater(lot.Water), quantity.FormatWater(k.Limit.AcceptAt), quantity.FormatWater(lot.Target))
 		return l, nil
 	}
 	offered, excluded := k.Candidates()

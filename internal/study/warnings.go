@@ -3,6 +3,7 @@ package study
 import (
 	"fmt"
 
+	"parch/internal/quantity"
 	"parch/internal/routes"
 	"parch/internal/steps"
 )
@@ -19,9 +20,9 @@ func lotWarnings(k *routes.Case) []string {
 	if err == nil && partly {
 		switch {
 		case k.Lot.FreeWaterM3 > 0 && k.Lot.Water < 0.8*saturated:
-			add("free water stands beside %.4g mg/kg dissolved, yet %s holds %.4g mg/kg at %.0f °C: the sample was not at equilibrium or the reading is of another layer", k.Lot.Water*1e6, k.Solvent.Name, saturated*1e6, room-273.15)
+			add("free water stands beside %s dissolved, yet %s holds %s at %.0f °C: the sample was not at equilibrium or the reading is of another layer", quantity.FormatWater(k.Lot.Water), k.Solvent.Name, quantity.FormatWater(saturated), room-273.15)
 		case k.Lot.FreeWaterM3 == 0 && k.Lot.Water > 1.02*saturated:
-			add("%.4g mg/kg is more than %s holds at %.0f °C (%.4g mg/kg): the lot holds free water, and a reading of a hazy sample is not its dissolved content", k.Lot.Water*1e6, k.Solvent.Name, room-273.15, saturated*1e6)
+			add("%s is more than %s holds at %.0f °C (%s): the lot holds free water, and a reading of a hazy sample is not its dissolved content", quantity.FormatWater(k.Lot.Water), k.Solvent.Name, room-273.15, quantity.FormatWater(saturated))
 		}
 	}
 	if band := k.Solvent.Water.SolubilityBand; band > 1.2 {
@@ -31,10 +32,13 @@ func lotWarnings(k *routes.Case) []string {
 		add("water + %s: activity model of quality %s", k.Solvent.Name, k.Solvent.Water.Quality)
 	}
 	if a := k.Catalog.Assays[k.Job.Site.KarlFischer]; a.Highest.SI > 0 && k.Lot.Water > a.Highest.SI {
-		add("%s Karl Fischer is advised up to %.4g mg/kg only; read the %.4g mg/kg of the start by the other method", a.Key, a.Highest.SI*1e6, k.Lot.Water*1e6)
+		add("%s Karl Fischer is advised up to %s only; read the %s of the start by the other method", a.Key, quantity.FormatWater(a.Highest.SI), quantity.FormatWater(k.Lot.Water))
 	}
 	return w
 }
+
+// leastProvenDose is the smallest dose of the published still dryings, g/L.
+const leastProvenDose = 50
 
 // runWarnings say what a route's numbers rest on.
 func runWarnings(k *routes.Case, run routes.Run) []string {
@@ -47,14 +51,17 @@ func runWarnings(k *routes.Case, run routes.Run) []string {
 			if _, charges := k.Still(); charges > 1 {
 				add("the still takes the lot in %d charges", charges)
 			}
-			add("below %.3g mg/kg a trap is taken to work at %.2g of the ideal, and its outlet is never claimed under %.3g mg/kg (common practice, no source)",
-				k.Catalog.Practice["trap-efficiency-below"].SI*1e6, k.Catalog.Practice["trap-efficiency"].SI, k.Catalog.Practice["trap-outlet-minimum"].SI*1e6)
+			add("below %s a trap is taken to work at %.2g of the ideal, and its outlet is never claimed under %s (common practice, no source)",
+				quantity.FormatWater(k.Catalog.Practice["trap-efficiency-below"].SI), k.Catalog.Practice["trap-efficiency"].SI, quantity.FormatWater(k.Catalog.Practice["trap-outlet-minimum"].SI))
 		case steps.Soak:
 			agent := k.Catalog.Agents[o.Agent]
 			if agent.LoadingBand > 1 {
 				add("%s: loading known to a factor of %.2g only", agent.Name, agent.LoadingBand)
 			}
 			add("the sieve is taken to hold %.2g g/100 g from its history; this and the mixing rate of a still vessel rule the result (fitted to few published dryings, most within a factor of 2)", k.Lot.ResidualLoading*100)
+			if dose := o.Figure("dose"); o.AgentKg > 0 && dose < leastProvenDose {
+				add("the dose of %.3g g/L is an extrapolation: the published dryings used 50 to 200 g/L", dose)
+			}
 		case steps.Buy:
 			add("water of the dry grade is its limit as sold, before the bottle is opened")
 		}

@@ -21,6 +21,9 @@ func patchChart(part []byte, values func(reference string) ([]cell, error)) ([]b
 		if part, err = turnBars(part); err != nil {
 			return nil, err
 		}
+		if part, err = outlineBars(part); err != nil {
+			return nil, err
+		}
 	}
 	if part, err = cacheText(part, values); err != nil {
 		return nil, err
@@ -49,6 +52,17 @@ func turnBars(part []byte) ([]byte, error) {
 		}
 	}
 	return append(bytes.Clone(categories), valueAxis...), nil
+}
+
+var barFill = regexp.MustCompile(`(</tx><spPr><a:solidFill><a:srgbClr val="[0-9A-F]{6}"></a:srgbClr></a:solidFill>)</spPr>`)
+
+// outlineBars draws a dark line around every bar: some of the hues are pale.
+func outlineBars(part []byte) ([]byte, error) {
+	if series, fills := bytes.Count(part, []byte("<ser>")), len(barFill.FindAll(part, -1)); series != fills {
+		return nil, fmt.Errorf("%d series of bars, %d of them filled as expected", series, fills)
+	}
+	line := `${1}<a:ln w="9525"><a:solidFill><a:srgbClr val="` + darkInk + `"></a:srgbClr></a:solidFill></a:ln></spPr>`
+	return barFill.ReplaceAll(part, []byte(line)), nil
 }
 
 func replaceOnce(part []byte, old, fresh string) ([]byte, error) {

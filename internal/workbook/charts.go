@@ -11,14 +11,13 @@ import (
 
 // placed is a chart and where it stands.
 type placed struct {
-	row    int // first row
-	height int // pixels
-	chart  *excelize.Chart
+	column, row int
+	height      int // pixels
+	chart       *excelize.Chart
 }
 
 const (
-	chartWidth  = 1120 // pixels
-	rowPixels   = 20   // height of a row without content
+	rowPixels   = 20 // height of a row without content
 	rowPoints   = 15.0
 	pixelPoints = 0.75
 )
@@ -37,7 +36,7 @@ func (g *grid) drawnTo() int {
 
 func (e *emitter) drawings(g *grid) error {
 	for _, p := range g.charts {
-		if err := e.file.AddChart(g.name, at(1, p.row), p.chart); err != nil {
+		if err := e.file.AddChart(g.name, at(p.column, p.row), p.chart); err != nil {
 			return err
 		}
 	}
@@ -48,37 +47,47 @@ func (e *emitter) drawings(g *grid) error {
 // in every chart; all bars are outlined since some of the hues are pale.
 var headColours = map[steps.Head]string{
 	steps.Labour: "0072B2", steps.Energy: "E69F00", steps.CoolingWater: "56B4E9", steps.Agent: "009E73",
-	steps.SolventLost: "D55E00", steps.Waste: "CC79A7", steps.Equipment: "F0E442", steps.Testing: "999999", steps.Purchase: "FFFFFF",
+	steps.SolventLost: "D55E00", steps.Waste: "CC79A7", steps.Equipment: "F0E442", steps.Testing: "999999", steps.Purchase: "333333",
 }
 
-// compareCharts draws, for each lot, cost by head and water left, below the table.
+const (
+	costWidth   = 840 // pixels
+	waterWidth  = 840
+	waterColumn = 9 // clear of the chart to its left
+)
+
+// compareCharts draws, for each lot, cost by head and beside it the water left,
+// below the table.
 func (l *layout) compareCharts(g *grid) {
 	for _, lot := range l.lots {
 		if len(lot.routes) == 0 {
 			continue
 		}
-		first, last := lot.routes[0].no-1, lot.routes[len(lot.routes)-1].no-1
-		height := 170 + 38*len(lot.routes)
-		l.draw(g, fmt.Sprintf("Lot %d: cost", lot.no), height, l.costChart(lot, rows{first, last}))
-		l.draw(g, fmt.Sprintf("Lot %d: water", lot.no), 380, l.waterChart(lot, rows{first, last}))
+		places := rows{lot.routes[0].no - 1, lot.routes[len(lot.routes)-1].no - 1}
+		height := max(300, 130+30*len(lot.routes))
+		row := g.roomForChart(float64(height) * pixelPoints)
+		g.draw(1, row, costWidth, height, fmt.Sprintf("Lot %d: cost", lot.no), l.costChart(lot, places))
+		g.draw(waterColumn, row, waterWidth, height, fmt.Sprintf("Lot %d: water", lot.no), l.waterChart(lot, places))
 	}
 }
 
-// draw places a chart below what is there, at the top of the next page where it
-// would otherwise be cut by the end of one.
-func (l *layout) draw(g *grid, name string, height int, c *excelize.Chart) {
-	row := max(g.last(), g.drawnTo()) + 2
-	points := float64(height) * pixelPoints
-	page := printableHeight / g.scale()
-	titles := g.span(g.frozenRows-1, g.frozenRows)
-	used := g.pageUsed(row, page, titles)
-	if used+points > page && points < page-titles {
-		row += int(math.Ceil((page - used) / rowPoints))
-	}
-	c.Dimension = excelize.ChartDimension{Width: chartWidth, Height: uint(height)}
+func (g *grid) draw(column, row, width, height int, name string, c *excelize.Chart) {
+	c.Dimension = excelize.ChartDimension{Width: uint(width), Height: uint(height)}
 	c.Format.Positioning = "oneCell"
 	c.Format.Name = name
-	g.charts = append(g.charts, placed{row, height, c})
+	g.charts = append(g.charts, placed{column, row, height, c})
+}
+
+// roomForChart is the next free row, or the first row of the next printed page
+// where a chart of that height would be cut by the end of this one.
+func (g *grid) roomForChart(points float64) int {
+	row := max(g.last(), g.drawnTo()) + 2
+	page := printableHeight / g.scale()
+	titles := g.span(g.titles())
+	if used := g.pageUsed(row, page, titles); used+points > page && points < page-titles {
+		row += int(math.Ceil((page - used) / rowPoints))
+	}
+	return row
 }
 
 // span is the height of some rows in points.
@@ -126,7 +135,6 @@ func (l *layout) costChart(lot *lotModel, places rows) *excelize.Chart {
 			Categories: on(sheetCosts, area(2, first, last)),
 			Values:     on(sheetCosts, area(column, first, last)),
 			Fill:       solid(headColours[head]),
-			Line:       excelize.LineOptions{Type: excelize.LineSolid, Width: 0.75, Fill: solid(darkInk)},
 		})
 	}
 	return c
@@ -152,27 +160,30 @@ func (l *layout) waterChart(lot *lotModel, places rows) *excelize.Chart {
 	for _, r := range lot.routes {
 		low, high = min(low, max(r.waterOut, lowestPlotted)), max(high, r.waterOut)
 	}
-	low = min(low, max(lot.acceptAt, lowestPlotted))
-	lowest, highest := math.Pow(10, math.Floor(math.Log10(low))), math.Pow(10, math.Ceil(math.Log10(high)+0.01))
+	low = min(low, max(lot.acceptAt, lowestPlotted)) // a limit below the axis is not drawn
+	lowest, highest := math.Pow(10, math.Floor(math.Log10(low/1.5))), math.Pow(10, math.Ceil(math.Log10(high*1.2)))
 	c.YAxis.LogBase, c.YAxis.Minimum, c.YAxis.Maximum = 10, &lowest, &highest
 	c.YAxis.MajorGridLines = true
 	c.YAxis.NumFmt = excelize.ChartNumFmt{CustomNumFmt: "General"}
 	c.YAxis.Title = axisTitle("mg/kg")
-	series := func(column int, line excelize.LineOptions, marker excelize.ChartMarker) {
+	series := func(column int, colour string, line excelize.LineOptions, symbol string, size int) {
 		c.Series = append(c.Series, excelize.ChartSeries{
 			Name:       on(sheetCompare, fixed(column, l.compareRows.first-1)),
 			Categories: on(sheetCompare, area(2, first, last)),
 			Values:     on(sheetCompare, area(column, first, last)),
-			Line:       line, Marker: marker,
+			Fill:       solid(colour),
+			Line:       line,
+			Marker: excelize.ChartMarker{Symbol: symbol, Size: size, Fill: solid(colour),
+				Border: excelize.LineOptions{Type: excelize.LineSolid, Width: 0.75, Fill: solid(darkInk)}},
 		})
 	}
-	mark := func(symbol, colour string, size int) excelize.ChartMarker {
-		return excelize.ChartMarker{Symbol: symbol, Size: size, Fill: solid(colour),
-			Border: excelize.LineOptions{Type: excelize.LineSolid, Width: 0.75, Fill: solid(darkInk)}}
+	symbol := "none"
+	if len(lot.routes) == 1 {
+		symbol = "dash" // a line through one point is not drawn
 	}
-	series(comparePlotted, excelize.LineOptions{Type: excelize.LineNone}, mark("diamond", "0072B2", 11))
-	series(compareTarget, excelize.LineOptions{Type: excelize.LineSolid, Width: 2, Fill: solid("D55E00")}, mark("dash", "D55E00", 8))
-	series(compareLimit, excelize.LineOptions{Type: excelize.LineSolid, Dash: excelize.LineDashDash, Width: 1.5, Fill: solid("009E73")}, mark("square", "009E73", 5))
+	series(comparePlotted, "0072B2", excelize.LineOptions{Type: excelize.LineNone}, "diamond", 10)
+	series(compareTarget, "D55E00", excelize.LineOptions{Type: excelize.LineSolid, Width: 2.25}, symbol, 12)
+	series(compareLimit, "009E73", excelize.LineOptions{Type: excelize.LineSolid, Dash: excelize.LineDashDash, Width: 2.25}, symbol, 9)
 	return c
 }
 

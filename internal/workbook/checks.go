@@ -2,8 +2,8 @@ package workbook
 
 import "fmt"
 
-var checkColumns = []column{{name: "No"}, {name: "Check"}, {name: "Found"}, {name: "Expected"}, {name: "Difference"}, {name: "Tolerance"},
-	{name: "Unit"}, {name: "Flag"}, {name: "Result"}}
+var checkColumns = []column{{"No", "1"}, {name: "Check"}, {"Found", "1"}, {"Expected", "1"}, {"Difference", "1"}, {"Tolerance", "1"},
+	{name: "Unit"}, {"Flag", "1"}, {name: "Result"}}
 
 const (
 	moneyTolerance   = 0.005
@@ -21,13 +21,13 @@ type test struct {
 func (l *layout) checks() *grid {
 	g := newGrid(sheetChecks, "Found and expected must agree within the tolerance. The sum of the flags is 0 when all checks hold.",
 		tabCheck, cell{look: message, formula: "check_message", value: checksHold}, 10, 74, 15, 15, 15, 12, 12, 8, 15)
-	first := frameRows + 7
+	first := frameRows + 8
 	g.table(first-2, "Always checked", checkColumns)
 	g.frozenRows = first - 1
 	always := l.testRows(g, first, l.alwaysTests(), "IFERROR((ABS(E%[1]d)>F%[1]d)*1,1)", `IF(H%[1]d>0,"fails","holds")`)
 	next := g.table(g.next(), "Checked against the program while no input and no price is edited", checkColumns)
 	unedited := l.testRows(g, next, l.programTests(), "IFERROR((edited_inputs=0)*(ABS(E%[1]d)>F%[1]d),1)",
-		fmt.Sprintf(`IF(H%%[1]d>0,"fails",%s)`, fixed(3, frameRows+3)))
+		fmt.Sprintf(`IF(H%%[1]d>0,"fails",%s)`, fixed(3, frameRows+4)))
 	l.masterRows(g, always, unedited)
 	for _, r := range []rows{always, unedited} {
 		if r.empty() {
@@ -41,9 +41,8 @@ func (l *layout) checks() *grid {
 }
 
 func (l *layout) masterRows(g *grid, always, unedited rows) {
-	total, edited, compared, say := frameRows+1, frameRows+2, frameRows+3, frameRows+4
-	row := func(r int, name, what string, c cell) {
-		g.put(1, r, text(plain, name))
+	total, inputs, edited, compared, say := frameRows+1, frameRows+2, frameRows+3, frameRows+4, frameRows+5
+	row := func(r int, what string, c cell) {
 		g.put(2, r, text(words, what))
 		g.put(3, r, c)
 	}
@@ -53,17 +52,18 @@ func (l *layout) masterRows(g *grid, always, unedited rows) {
 			sum += fmt.Sprintf("+SUM(H%d:H%d)", r.first, r.last)
 		}
 	}
-	count := func(sheet string, r rows) string {
+	differ := func(sheet string, r rows) string {
 		if r.empty() {
 			return "0"
 		}
 		value, run := on(sheet, r.column(colValue)), on(sheet, r.column(colRun))
 		return fmt.Sprintf(`SUMPRODUCT((%s<>%s)*(%s<>""))`, value, run, run)
 	}
-	row(total, "", "Sum of all flags: 0 when all checks hold", derived(sum, 0.0).shown("0"))
-	row(edited, "", "Inputs and prices that differ from the run", derived(count(sheetInputs, l.inputRows)+"+"+count(sheetPrices, l.priceRows), 0.0).shown("0"))
-	row(compared, "", "Comparison with the program", derived(fmt.Sprintf(`IF(%s=0,"holds","not compared")`, fixed(3, edited)), "holds"))
-	row(say, "", "Shown at the top of every sheet", derived(fmt.Sprintf(`IF(%s=0,"%s","See Checks")&IF(%s,". Run parch again","")`, fixed(3, total), checksHold, l.rerun()), checksHold))
+	row(total, "Sum of all flags: 0 when all checks hold", whole(sum, 0))
+	row(inputs, "Inputs that differ from the run", whole(differ(sheetInputs, l.inputRows), 0))
+	row(edited, "Inputs and prices that differ from the run", whole(fixed(3, inputs)+"+"+differ(sheetPrices, l.priceRows), 0))
+	row(compared, "Comparison with the program", derived(fmt.Sprintf(`IF(%s=0,"holds","not compared")`, fixed(3, edited)), "holds"))
+	row(say, "Shown at the top of every sheet", derived(fmt.Sprintf(`IF(%s=0,"%s","See Checks")&IF(%s,". Run parch again","")`, fixed(3, total), checksHold, l.rerun()), checksHold))
 	l.name("check_total", sheetChecks, 3, total)
 	l.name("edited_inputs", sheetChecks, 3, edited)
 	l.name("check_message", sheetChecks, 3, say)
@@ -82,7 +82,7 @@ func (l *layout) testRows(g *grid, first int, tests []test, flagFormula, wordFor
 		g.putRow(row, count(i+1), text(words, t.what), t.found.in(t.unit), t.expected.in(t.unit),
 			derived(fmt.Sprintf("C%d-D%d", row, row), found-expected).in(t.unit).shown("0.0E+00"),
 			number(t.tolerance, t.unit).shown("0.0E+00"), text(plain, t.unit),
-			derived(fmt.Sprintf(flagFormula, row), 0.0).shown("0"), derived(fmt.Sprintf(wordFormula, row), "holds"))
+			whole(fmt.Sprintf(flagFormula, row), 0), derived(fmt.Sprintf(wordFormula, row), "holds"))
 	}
 	if len(tests) == 0 {
 		g.put(1, first, text(plain, "Nothing to check."))
@@ -108,7 +108,7 @@ func (l *layout) inputTests() []test {
 	values, runs := on(sheetInputs, l.inputRows.column(colValue)), on(sheetInputs, l.inputRows.column(colRun))
 	states := on(sheetInputs, l.inputRows.column(colState))
 	tests := []test{
-		{"Edited inputs that only the program can follow", derived(fmt.Sprintf(`COUNTIF(%s,"%s")`, states, runAgain), 0.0).shown("0"), none(), 0, "cells"},
+		{"Edited inputs that only the program can follow", whole(fmt.Sprintf(`COUNTIF(%s,"%s")`, states, runAgain), 0), none(), 0, "cells"},
 		{"Inputs that should be numbers and are not", derived(fmt.Sprintf("SUMPRODUCT(ISNUMBER(%s)*NOT(ISNUMBER(%s)))", runs, values), 0.0).shown("0"), none(), 0, "cells"},
 	}
 	if l.priceRows.empty() {
@@ -116,7 +116,7 @@ func (l *layout) inputTests() []test {
 	}
 	prices := on(sheetPrices, l.priceRows.column(colValue))
 	tests = append(tests,
-		test{"Prices that are not numbers", derived(fmt.Sprintf("ROWS(%s)-COUNT(%s)", prices, prices), 0.0).shown("0"), none(), 0, "cells"},
+		test{"Prices that are not numbers", whole(fmt.Sprintf("ROWS(%s)-COUNT(%s)", prices, prices), 0), none(), 0, "cells"},
 		test{"Prices below zero", derived(fmt.Sprintf("SUMPRODUCT((%s<0)*1)", prices), 0.0).shown("0"), none(), 0, "cells"})
 	if !l.lineRows.empty() {
 		items := on(sheetCosts, l.lineRows.column(billItem))
@@ -178,14 +178,14 @@ func (l *layout) rankTests() (tests []test) {
 				ranked++
 			}
 		}
-		ranks, lots, contest := place(rankPlace), place(rankLot), place(rankContest)
+		ranks, lots, contest, sharing := place(rankPlace), place(rankLot), place(rankContest), place(rankSharing)
 		reach := derived(fmt.Sprintf("COUNTIF(%s,%s)", contest, no), ranked).shown("0")
 		worst := derived(fmt.Sprintf("SUMPRODUCT(MAX((%s=%s)*%s))", lots, no, ranks), ranked).shown("0")
-		different := derived(fmt.Sprintf("SUMPRODUCT((%s=%s)/COUNTIFS(%s,%s,%s,%s))", contest, no, contest, contest, ranks, ranks), ranked).shown("0")
+		shared := whole(fmt.Sprintf("SUMPRODUCT((%s=%s)*(%s>1))", contest, no, sharing), 0)
 		name := fmt.Sprintf("Lot %d: ", lot.no)
 		tests = append(tests,
 			test{name + "last rank and number of routes that reach the target", worst, reach, 0, "routes"},
-			test{name + "different ranks and number of routes that reach the target", different, reach, balanceTolerance, "routes"})
+			test{name + "routes that share a rank", shared, none(), 0, "routes"})
 	}
 	return tests
 }

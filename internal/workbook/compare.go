@@ -19,7 +19,7 @@ const (
 
 func (l *layout) compare() *grid {
 	g := newGrid(sheetCompare, "One row per route. Costs and ranks follow the prices; water, hours and amounts are results of the program. Money in "+l.currency()+".",
-		tabResult, checkCell(), 20, 32, 10, 10, 10, 10, 10, 8, 10, 10, 10, 10, 11, 11, 11, 10, 10, 18)
+		tabResult, checkCell(), 20, 30, 9, 9, 10, 9, 9, 7, 9, 9, 9, 11, 10, 11, 12, 9, 11, 16)
 	l.compareBlock(g)
 	l.compareCharts(g)
 	l.excludedBlock(g)
@@ -31,13 +31,13 @@ func (l *layout) compare() *grid {
 func (l *layout) compareBlock(g *grid) {
 	units := frameRows + 1
 	first := g.table(units, "", []column{{name: "Lot"}, {name: "Route id"}, {name: "Reaches target"}, {"Water out", "mg/kg"},
-		{"Hours attended", "h"}, {name: "Cost per batch"}, {name: "Cost per litre"}, {name: "Rank"}, {"Hours total", "h"}, {"Energy", "kWh"}, {"Waste", "kg"},
+		{"Hours attended", "h"}, {"Cost per batch", "1"}, {"Cost per litre", "1"}, {"Rank", "1"}, {"Hours total", "h"}, {"Energy", "kWh"}, {"Waste", "kg"},
 		{"Litres delivered", "L"}, {"Cost per year", l.currency()}, {"Emissions", "kg CO2e"}, {"Acceptance limit", "mg/kg"}, {"Target", "mg/kg"},
-		{"Water drawn in chart", "mg/kg"}, {name: "State"}})
+		{"Water left, as drawn", "mg/kg"}, {name: "State"}})
 	g.put(1, units, text(block, "Routes"))
 	g.put(compareBatch, units, text(plain, l.currency()))
 	g.put(compareLitre, units, text(plain, l.money("L")))
-	g.frozenRows, g.frozenColumns = first-1, 2
+	g.mixed, g.frozenRows, g.frozenColumns = true, first-1, 2
 	l.compareRows = rows{first, first + len(l.routes) - 1}
 	for i := range l.routes {
 		l.compareRow(g, i)
@@ -87,99 +87,4 @@ func (l *layout) compareRow(g *grid, i int) {
 		derived(l.lotName(r.lot, "target_water"), r.lot.target).in("mg/kg").shown(water),
 		derived(fmt.Sprintf("MAX(D%d,job_lowest_plotted)", row), max(r.waterOut, lowestPlotted)).in("mg/kg").shown(water),
 		l.stateLink(r.lot))
-}
-
-func (l *layout) excludedBlock(g *grid) {
-	var all [][3]string
-	for _, lot := range l.lots {
-		for _, x := range lot.Excluded {
-			reason := x.Reason
-			if x.Source != "" {
-				reason += " [" + x.Source + "]"
-			}
-			all = append(all, [3]string{lot.Job.Name, x.ID, reason})
-		}
-	}
-	if len(all) == 0 {
-		return
-	}
-	row := l.listBlock(g, "Not offered, and why", "Lot", "Route or agent", "Reason and source")
-	for _, x := range all {
-		g.putRow(row, text(words, x[0]), text(words, x[1]), blank(plain))
-		g.across(3, len(g.widths), row, x[2])
-		row++
-	}
-}
-
-// listBlock starts a block of text whose last column runs over the columns to its
-// right.
-func (l *layout) listBlock(g *grid, name, a, b, c string) int {
-	row := max(g.last(), g.drawnTo()) + 2
-	g.put(1, row, text(block, name))
-	g.putRow(row+1, text(heading, a), text(heading, b), text(heading, c))
-	for column := 4; column <= len(g.widths); column++ {
-		g.put(column, row+1, blank(heading))
-	}
-	return row + 2
-}
-
-// cautionBlock lists each caution once, with the routes it is for.
-func (l *layout) cautionBlock(g *grid) {
-	row := l.listBlock(g, "Cautions: site rules, safety data sheets, local codes and licensed practice decide", "Level", "Routes", "Caution and source")
-	type key struct {
-		lot  int
-		code string
-	}
-	seen := map[key]int{}
-	for _, r := range l.routes {
-		for _, c := range r.Cautions {
-			k := key{r.lot.no, c.Code}
-			if at, ok := seen[k]; ok {
-				old := g.rows[at-1][1]
-				old.value = old.value.(string) + ", " + r.ID
-				g.put(2, at, old)
-				continue
-			}
-			seen[k] = row
-			says := c.Text
-			if c.Source != "" {
-				says += " [" + c.Source + "]"
-			}
-			g.putRow(row, text(words, c.Level), text(words, r.lot.Job.Name+": "+r.ID))
-			g.across(3, len(g.widths), row, says)
-			row++
-		}
-	}
-	if len(seen) == 0 {
-		g.put(1, row, text(plain, "No route, no caution."))
-	}
-}
-
-// noteBlock says what must be known of a lot or a route besides its numbers.
-func (l *layout) noteBlock(g *grid) {
-	var all [][3]string
-	for _, w := range l.report.Warnings {
-		all = append(all, [3]string{"the job", "", w})
-	}
-	for _, lot := range l.lots {
-		for _, s := range append([]string{lot.NothingToDo, lot.CannotShow}, lot.Warnings...) {
-			if s != "" {
-				all = append(all, [3]string{lot.Job.Name, "", s})
-			}
-		}
-		for _, r := range lot.routes {
-			for _, w := range append(append([]string{}, r.Route.Warnings...), r.Run.Warnings...) {
-				all = append(all, [3]string{lot.Job.Name, r.ID, w})
-			}
-		}
-	}
-	if len(all) == 0 {
-		return
-	}
-	row := l.listBlock(g, "Notes", "Lot", "Route id", "Note")
-	for _, x := range all {
-		g.putRow(row, text(words, x[0]), text(words, x[1]), blank(plain))
-		g.across(3, len(g.widths), row, x[2])
-		row++
-	}
 }

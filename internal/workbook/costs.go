@@ -38,13 +38,13 @@ const (
 	rankLot       = 3
 	rankWater     = 4
 	rankLimit     = 5
-	rankCanShow   = 6
-	rankReaches   = 7
-	rankContest   = 8
-	rankObjective = 9
-	rankOrder     = 10
-	rankAhead     = 11 // three columns
-	rankPlace     = 14
+	rankReaches   = 6
+	rankContest   = 7
+	rankObjective = 8
+	rankOrder     = 9
+	rankAhead     = 10 // three columns
+	rankPlace     = 13
+	rankSharing   = 14
 )
 
 var headNames = map[steps.Head]string{
@@ -55,6 +55,7 @@ var headNames = map[steps.Head]string{
 func (l *layout) costs() *grid {
 	g := newGrid(sheetCosts, "The bill of each route: quantity × price = amount, for one batch. Below the lines: cost by head, cost per litre, target and rank. Nothing is rounded, only shown to the cent.",
 		tabWork, checkCell(), 20, 30, 9, 13, 10, 17, 11, 11, 11, 11, 11, 11, 11, 11, 52)
+	g.mixed, g.frozenRows, g.frozenColumns = true, frameRows, 3 // the blocks share only these columns
 	l.billBlock(g)
 	l.headBlock(g)
 	l.litreBlock(g)
@@ -66,10 +67,9 @@ func (l *layout) costs() *grid {
 }
 
 func (l *layout) billBlock(g *grid) {
-	first := g.table(frameRows+2, "Lines of the bill", []column{{name: "Lot"}, {name: "Route id"}, {name: "Route no"}, {name: "Head"}, {name: "Step"},
-		{name: "Item"}, {name: "Quantity"}, {name: "Unit"}, {name: "Counted per"}, {"Shared by", "batches"}, {name: "Quantity per batch"},
-		{name: "Unit price"}, {"Amount", l.currency()}, {name: "Unit of the price"}, {name: "Basis"}})
-	g.frozenRows, g.frozenColumns = first-1, 2
+	first := g.table(frameRows+2, "Lines of the bill", []column{{name: "Lot"}, {name: "Route id"}, {"Route no", "1"}, {name: "Head"}, {"Step, 0 for the route", "1"},
+		{name: "Item"}, {"Quantity", "1"}, {name: "Unit"}, {name: "Counted per"}, {"Shared by", "batches"}, {"Quantity per batch", "1"},
+		{"Unit price", "1"}, {"Amount", l.currency()}, {name: "Unit of the price"}, {name: "Basis"}})
 	row := first
 	for _, r := range l.routes {
 		for _, line := range r.lines {
@@ -92,17 +92,17 @@ func (l *layout) billRow(g *grid, row int, r *routeModel, line lineModel) {
 		number(line.quantity, line.Unit).shown(quantity), text(plain, line.Unit), text(plain, per),
 		derived(fmt.Sprintf(`IF(%s="year",%s,1)`, at(billPer, row), l.lotName(r.lot, "batches_per_year")), line.shared).shown(formatFor(line.shared)),
 		derived(at(billQty, row)+"/"+at(billShared, row), line.perBatch).in(line.Unit).shown(quantity),
-		derived(priceName(line.Item, line.Unit), line.price).in(l.money(line.Unit)).shown("#,##0.00##"),
+		derived(priceName(line.Item, line.Unit), line.price).in(l.money(line.Unit)).shown(l.priceFormat()),
 		derived(at(billBatch, row)+"*"+at(billPrice, row), line.amount).in(l.currency()).shown(moneyFormat),
 		text(plain, l.money(line.Unit)), text(words, line.Basis))...)
 }
 
 func (l *layout) headBlock(g *grid) {
-	columns := []column{{name: "Lot"}, {name: "Route id"}, {name: "Route no"}}
+	columns := []column{{name: "Lot"}, {name: "Route id"}, {"Route no", "1"}}
 	for _, h := range steps.Heads {
-		columns = append(columns, column{name: headNames[h]})
+		columns = append(columns, column{headNames[h], "1"})
 	}
-	columns = append(columns, column{name: "Sum of heads"})
+	columns = append(columns, column{"Sum of heads", "1"})
 	first := g.table(g.next(), "Cost of a batch by head, "+l.currency(), columns)
 	l.headRows = rows{first, first + len(l.routes) - 1}
 	amounts, routeNos, heads := l.lineRows.column(billAmount), l.lineRows.column(3), l.lineRows.column(billHead)
@@ -122,7 +122,7 @@ func (l *layout) headBlock(g *grid) {
 }
 
 func (l *layout) litreBlock(g *grid) {
-	first := g.table(g.next(), "Cost per litre and per year", []column{{name: "Lot"}, {name: "Route id"}, {name: "Route no"},
+	first := g.table(g.next(), "Cost per litre and per year", []column{{name: "Lot"}, {name: "Route id"}, {"Route no", "1"},
 		{"Cost per batch", l.currency()}, {"Litres delivered", "L"}, {"Cost per litre", l.money("L")}, {"Hours total", "h"}, {"Waste", "kg"},
 		{"Energy", "kWh"}, {"Batches per year", "1/yr"}, {"Cost per year", l.currency()}})
 	l.litreRows = rows{first, first + len(l.routes) - 1}
@@ -145,9 +145,9 @@ func (l *layout) litreBlock(g *grid) {
 
 func (l *layout) rankBlock(g *grid) {
 	first := g.table(g.next(), "Target and rank: routes of a lot that reach the target, by objective, then cost per litre, then route id", []column{
-		{name: "Lot"}, {name: "Route id"}, {name: "Lot no"}, {"Water out", "mg/kg"}, {"Acceptance limit", "mg/kg"}, {name: "Target can be shown"},
-		{name: "Reaches target"}, {name: "Ranked in lot no"}, {name: "Objective value"}, {name: "Order of the route id"}, {name: "Ahead by objective"},
-		{name: "Level, ahead by cost"}, {name: "Level, ahead by id"}, {name: "Rank, 0 for none"}})
+		{name: "Lot"}, {name: "Route id"}, {"Lot no", "1"}, {"Water out", "mg/kg"}, {"Acceptance limit", "mg/kg"}, {name: "Reaches target"},
+		{"Ranked in lot no", "1"}, {"Objective value", "1"}, {"Order of the route id", "1"}, {"Ahead by objective", "1"},
+		{"Level, ahead by cost", "1"}, {"Level, ahead by id", "1"}, {"Rank, 0 for none", "1"}, {"Routes with this rank", "1"}})
 	l.rankRows = rows{first, first + len(l.routes) - 1}
 	water := l.waterFormat()
 	for i, r := range l.routes {
@@ -155,12 +155,11 @@ func (l *layout) rankBlock(g *grid) {
 		g.putRow(row, text(words, r.lot.Job.Name), text(words, r.ID), count(r.lot.no),
 			derived(on(sheetSteps, at(resultWater, l.resultRows.at(i))), r.waterOut).in("mg/kg").shown(water),
 			derived(l.lotName(r.lot, "accept_limit"), r.lot.acceptAt).in("mg/kg").shown(water),
-			derived(l.lotName(r.lot, "can_show"), yesNo(r.lot.shown)),
-			derived(fmt.Sprintf(`IF(AND(D%d<=E%d*(1+job_tie),F%d="yes"),"yes","no")`, row, row, row), yesNo(r.reaches)),
-			derived(fmt.Sprintf(`IF(G%d="yes",C%d,0)`, row, row), r.contest()).shown("0"),
-			derived(fmt.Sprintf("INDEX(F%d:I%d,MATCH(job_objective,%s,0))", litre, litre, on(sheetInputs, l.objectiveList.column(colValue))), r.objective).shown("#,##0.00##"),
+			derived(fmt.Sprintf(`IF(AND(D%d<=E%d*(1+job_tie),%s="yes"),"yes","no")`, row, row, l.lotName(r.lot, "can_show")), yesNo(r.reaches)),
+			derived(fmt.Sprintf(`IF(F%d="yes",C%d,0)`, row, row), r.contest()).shown("0"),
+			derived(fmt.Sprintf("INDEX(F%d:I%d,MATCH(job_objective,%s,0))", litre, litre, on(sheetInputs, l.objectiveList.column(colValue))), r.objective).shown(decimals(4)),
 			count(r.order))
-		l.aheadCells(g, row, litre, r)
+		l.placeCells(g, row, litre, r)
 	}
 	l.noRoutes(g, first, len(l.routes))
 }
@@ -172,22 +171,23 @@ func (r *routeModel) contest() float64 {
 	return 0
 }
 
-// aheadCells count the routes that come before this one: by the objective; level
-// in it, by cost per litre; level in both, by the id.
-func (l *layout) aheadCells(g *grid, row, litre int, r *routeModel) {
+// placeCells count the routes of the lot that come before this one: by the
+// objective; level in it, by cost per litre; level in both, by the id. Routes are
+// level where as many come before both.
+func (l *layout) placeCells(g *grid, row, litre int, r *routeModel) {
 	in := func(rr rows, column int) string {
 		return fmt.Sprintf("%s$%d:%s$%d", columnName(column), rr.first, columnName(column), rr.last)
 	}
-	same := fmt.Sprintf("(%s=C%d)", in(l.rankRows, rankContest), row)
-	objective, cost := in(l.rankRows, rankObjective), in(l.litreRows, litreCost)
-	level := fmt.Sprintf("(ABS(%s-I%d)<=job_tie*I%d)", objective, row, row)
-	ahead := []string{
-		fmt.Sprintf("SUMPRODUCT(%s*(%s<I%d*(1-job_tie)))", same, objective, row),
-		fmt.Sprintf("SUMPRODUCT(%s*%s*(%s<F%d*(1-job_tie)))", same, level, cost, litre),
-		fmt.Sprintf("SUMPRODUCT(%s*%s*(ABS(%s-F%d)<=job_tie*F%d)*(%s<J%d))", same, level, cost, litre, litre, in(l.rankRows, rankOrder), row),
-	}
-	for i, f := range ahead {
-		g.put(rankAhead+i, row, derived(f, float64(r.ahead[i])).shown("0"))
-	}
-	g.put(rankPlace, row, derived(fmt.Sprintf(`IF(G%d="yes",1+K%d+L%d+M%d,0)`, row, row, row, row), float64(r.rank)).shown("0"))
+	ranked := func(column int) string { return in(l.rankRows, column) }
+	level := fmt.Sprintf("(%s=C%d)", ranked(rankContest), row)
+	g.put(rankAhead, row, whole(fmt.Sprintf("SUMPRODUCT(%s*(%s<H%d*(1-job_tie)))", level, ranked(rankObjective), row), r.ahead[0]))
+	level += fmt.Sprintf("*(%s=J%d)", ranked(rankAhead), row)
+	g.put(rankAhead+1, row, whole(fmt.Sprintf("SUMPRODUCT(%s*(%s<F%d*(1-job_tie)))", level, in(l.litreRows, litreCost), litre), r.ahead[1]))
+	level += fmt.Sprintf("*(%s=K%d)", ranked(rankAhead+1), row)
+	g.put(rankAhead+2, row, whole(fmt.Sprintf("SUMPRODUCT(%s*(%s<I%d))", level, ranked(rankOrder), row), r.ahead[2]))
+	g.put(rankPlace, row, whole(fmt.Sprintf(`IF(F%d="yes",1+J%d+K%d+L%d,0)`, row, row, row, row), r.rank))
+	g.put(rankSharing, row, whole(fmt.Sprintf("COUNTIFS(%s,G%d,%s,M%d)", ranked(rankContest), row, ranked(rankPlace), row), r.sharing))
 }
+
+// whole is a formula that counts.
+func whole(f string, n int) cell { return derived(f, float64(n)).shown("0") }

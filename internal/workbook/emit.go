@@ -72,6 +72,9 @@ func (w *file) check() error {
 }
 
 func (w *file) prepare(f *excelize.File) error {
+	if err := f.SetDefaultFont(typeface); err != nil {
+		return err
+	}
 	for i, g := range w.grids {
 		if i == 0 {
 			if err := f.SetSheetName("Sheet1", g.name); err != nil {
@@ -159,7 +162,7 @@ func (e *emitter) row(sw *excelize.StreamWriter, g *grid, row int, cells []cell)
 		if c == (cell{}) {
 			continue
 		}
-		id, err := e.style(styled{c.look, c.format, c.isNumber()})
+		id, err := e.style(styled{c.look, c.format, c.isNumber() || c.right})
 		if err != nil {
 			return err
 		}
@@ -184,7 +187,7 @@ func (e *emitter) style(s styled) (int, error) {
 const (
 	lineHeight   = 13.5 // points
 	tallest      = 400  // points, below the limit of a row
-	charsPerUnit = 1.05 // characters of text that fit in a unit of column width
+	charsPerUnit = 1.2  // characters of text that fit in a unit of column width
 )
 
 // height gives a row room for its wrapped text.

@@ -21,7 +21,7 @@ func formatFor(values ...float64) string {
 		figures := 2 - int(math.Floor(math.Log10(abs(v))))
 		decimals = max(decimals, figures)
 	}
-	if whole(values) {
+	if allWhole(values) {
 		decimals = 0
 	}
 	if decimals = min(decimals, mostDecimals); decimals <= 0 {
@@ -30,7 +30,7 @@ func formatFor(values ...float64) string {
 	return "#,##0." + strings.Repeat("0", decimals)
 }
 
-func whole(values []float64) bool {
+func allWhole(values []float64) bool {
 	for _, v := range values {
 		if v != math.Trunc(v) {
 			return false
@@ -46,4 +46,16 @@ func each[T any](items []T, value func(T) float64) []float64 {
 		out[i] = value(x)
 	}
 	return out
+}
+
+// exactFormat is the number format of prices: cents, and more decimals only where
+// some price needs them.
+func exactFormat(prices []float64) string {
+	decimals := 2
+	for _, p := range prices {
+		for scale := math.Pow10(decimals); decimals < mostDecimals+2 && abs(p*scale-math.Round(p*scale)) > 1e-6; scale *= 10 {
+			decimals++
+		}
+	}
+	return "#,##0." + strings.Repeat("0", decimals)
 }

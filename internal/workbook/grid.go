@@ -18,6 +18,7 @@ type cell struct {
 	format  string // number format
 	unit    string // unit of a number; "1" for a pure count
 	goTo    string // place in the workbook that a click leads to, "Costs!A7"
+	right   bool   // heading of a column of numbers
 }
 
 func (c cell) as(l look) cell            { c.look = l; return c }
@@ -88,6 +89,7 @@ type grid struct {
 	heights       map[int]float64
 	frozenRows    int
 	frozenColumns int
+	mixed         bool // blocks with different columns follow each other
 	printColumns  int
 	limits        []limit
 	flags         []flag
@@ -180,7 +182,9 @@ func (c column) heading() string {
 func (g *grid) table(row int, name string, columns []column) int {
 	g.put(1, row, text(block, name))
 	for i, c := range columns {
-		g.put(i+1, row+1, text(heading, c.heading()))
+		h := text(heading, c.heading())
+		h.right = c.unit != ""
+		g.put(i+1, row+1, h)
 	}
 	return row + 2
 }

@@ -64,6 +64,7 @@ type routeModel struct {
 	order     int    // place of the id among the ids of the lot
 	ahead     [3]int // routes ahead by objective, by cost per litre, by id
 	rank      int
+	sharing   int // routes of the workbook with the same lot and rank
 }
 
 func newModel(r *study.Report) (*model, error) {
@@ -89,6 +90,13 @@ func newModel(r *study.Report) (*model, error) {
 	}
 	for _, l := range m.lots {
 		rankRoutes(l.routes, slices.Index(objectives, r.Job.Objective))
+	}
+	for _, a := range m.routes {
+		for _, b := range m.routes {
+			if a.contest() == b.contest() && a.rank == b.rank {
+				a.sharing++
+			}
+		}
 	}
 	return m, nil
 }
@@ -173,25 +181,31 @@ func rankRoutes(list []*routeModel, objective int) {
 		}
 	}
 	for _, a := range list {
-		for _, b := range list {
-			if !b.reaches {
-				continue
-			}
-			levelObjective := abs(b.objective-a.objective) <= tie*a.objective
-			levelCost := levelObjective && abs(b.perLitre-a.perLitre) <= tie*a.perLitre
-			switch {
-			case b.objective < a.objective*(1-tie):
-				a.ahead[0]++
-			case levelObjective && b.perLitre < a.perLitre*(1-tie):
-				a.ahead[1]++
-			case levelCost && b.order < a.order:
-				a.ahead[2]++
-			}
-		}
+		a.ahead[0] = before(list, func(b *routeModel) bool { return b.objective < a.objective*(1-tie) })
+	}
+	for _, a := range list {
+		a.ahead[1] = before(list, func(b *routeModel) bool {
+			return b.ahead[0] == a.ahead[0] && b.perLitre < a.perLitre*(1-tie)
+		})
+	}
+	for _, a := range list {
+		a.ahead[2] = before(list, func(b *routeModel) bool {
+			return b.ahead[0] == a.ahead[0] && b.ahead[1] == a.ahead[1] && b.order < a.order
+		})
 		if a.reaches {
 			a.rank = 1 + a.ahead[0] + a.ahead[1] + a.ahead[2]
 		}
 	}
+}
+
+// before counts the routes that reach the target and come before another.
+func before(list []*routeModel, comes func(*routeModel) bool) (n int) {
+	for _, b := range list {
+		if b.reaches && comes(b) {
+			n++
+		}
+	}
+	return n
 }
 
 func abs(x float64) float64 { return max(x, -x) }

@@ -8,13 +8,12 @@ import (
 
 // A4, landscape, one page wide. Lengths in points.
 const (
-	paperA4          = 9
-	marginInches     = 0.4
-	footInches       = 0.6
-	printableWidth   = 841.9 - 2*72*marginInches
-	printableHeight  = 595.3 - 72*(marginInches+footInches)
-	pointsPerUnit    = 5.25 // width of one unit of column width
-	pointsPerPadding = 3.75 // added to each column
+	paperA4         = 9
+	marginInches    = 0.4
+	footInches      = 0.6
+	printableWidth  = 841.9 - 2*72*marginInches
+	printableHeight = 595.3 - 72*(marginInches+footInches)
+	pointsPerUnit   = 5.6 // width of one unit of column width
 )
 
 // view sets what stands before the rows in the file: it must come before them.
@@ -50,9 +49,9 @@ func (e *emitter) printRange(g *grid) error {
 	names := []excelize.DefinedName{{Name: "_xlnm.Print_Area",
 		RefersTo: sheet + fixed(1, 1) + ":" + fixed(g.printColumns, last), Scope: g.name}}
 	if g.frozenRows > 0 {
-		first := max(1, g.frozenRows-1)
+		first, last := g.titles()
 		names = append(names, excelize.DefinedName{Name: "_xlnm.Print_Titles",
-			RefersTo: fmt.Sprintf("%s$%d:$%d", sheet, first, g.frozenRows), Scope: g.name})
+			RefersTo: fmt.Sprintf("%s$%d:$%d", sheet, first, last), Scope: g.name})
 	}
 	for _, n := range names {
 		if err := e.file.SetDefinedName(&n); err != nil {
@@ -60,6 +59,15 @@ func (e *emitter) printRange(g *grid) error {
 		}
 	}
 	return nil
+}
+
+// titles are the rows repeated on each printed page: the headings of a sheet with
+// one set of columns, else the top of the sheet.
+func (g *grid) titles() (first, last int) {
+	if g.mixed {
+		return 1, frameRows
+	}
+	return g.frozenRows, g.frozenRows
 }
 
 // protect guards against slips: only inputs can be edited. There is no password.
@@ -74,7 +82,7 @@ func (e *emitter) protect(g *grid) error {
 func (g *grid) scale() float64 {
 	width := 0.0
 	for _, w := range g.widths[:g.printColumns] {
-		width += w*pointsPerUnit + pointsPerPadding
+		width += w * pointsPerUnit
 	}
 	return min(1, printableWidth/width)
 }

@@ -7,8 +7,8 @@ import (
 	"parch/internal/costs"
 )
 
-var priceColumns = []column{{name: "Item"}, {name: "What it is"}, {name: "Price"}, {name: "Unit"}, {name: "Source or note"},
-	{name: "Price in the run"}, {name: "When edited"}, {name: "State"}, {name: "Own or default"}, {name: "Date"}, {name: "Confidence"}, {name: "Mark"}}
+var priceColumns = []column{{name: "Item"}, {name: "What it is"}, {"Price", "1"}, {name: "Unit"}, {name: "Source or note"},
+	{"Price in the run", "1"}, {name: "When edited"}, {name: "State"}, {name: "Own or default"}, {name: "Date"}, {name: "Confidence"}, {name: "Mark"}}
 
 const mostMoney = 1e7
 
@@ -17,10 +17,7 @@ func (l *layout) priceList() *grid {
 		tabInput, checkCell(), 27, 36, 13, 13, 50, 13, 15, 16, 11, 12, 14, 24)
 	first := g.table(frameRows+2, "Prices, "+l.currency(), priceColumns)
 	g.frozenRows = first - 1
-	format := formatFor(each(l.prices, func(p costs.Price) float64 { return float(p.PerUnit) })...)
-	if len(l.prices) > 0 && format == "#,##0" || format == "#,##0.0" {
-		format = moneyFormat
-	}
+	format := l.priceFormat()
 	for i, p := range l.prices {
 		l.priceRow(g, first+i, p, format)
 	}
@@ -76,4 +73,8 @@ func priceMark(p costs.Price) string {
 		return "indicative: check before use"
 	}
 	return ""
+}
+
+func (l *layout) priceFormat() string {
+	return exactFormat(each(l.prices, func(p costs.Price) float64 { return float(p.PerUnit) }))
 }

@@ -35,7 +35,7 @@ func (l *layout) readMe() *grid {
 	r, j := l.report, l.report.Job
 	g := newGrid(sheetReadMe, "Ways to dry a bulk solvent, compared: "+oneLine(j.Title), tabText, checkCell(), 26, 120)
 	g.put(1, 3, text(plain, "Checks"))
-	g.frozenRows = frameRows
+	g.mixed, g.frozenRows = true, frameRows
 	section := func(name string) { g.put(1, g.next(), text(block, name)) }
 	line := func(a cell, b string) { g.putRow(g.last()+1, a, text(words, b)) }
 	section("This run")

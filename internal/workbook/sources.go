@@ -5,7 +5,7 @@ func (l *layout) sources() *grid {
 		tabText, checkCell(), 34, 26, 20, 26, 60)
 	first := g.table(frameRows+2, "Weak numbers: treat results that depend on them with care",
 		[]column{{name: "What"}, {name: "Value"}, {name: "Rests on"}, {name: "Source"}, {name: "Note"}})
-	g.frozenRows = frameRows
+	g.mixed, g.frozenRows = true, frameRows
 	for i, w := range l.report.Weak {
 		g.putRow(first+i, text(words, w.What), text(program, w.Value), text(warn, w.Confidence), text(words, w.Source), text(words, w.Note))
 	}

@@ -32,6 +32,7 @@ func (l *layout) allSteps() (out []stepModel) {
 func (l *layout) steps() *grid {
 	g := newGrid(sheetSteps, "What each step does, computed by the program. These values change only by a new run; the column State says when one is needed.",
 		tabWork, checkCell(), 20, 30, 8, 9, 10, 14, 10, 10, 10, 10, 10, 10, 10, 10, 10, 10, 44, 18)
+	g.mixed, g.frozenRows, g.frozenColumns = true, frameRows, 3 // the blocks share only these columns
 	all := l.allSteps()
 	l.stepBlock(g, all)
 	l.balanceBlock(g, all)
@@ -43,21 +44,20 @@ func (l *layout) steps() *grid {
 }
 
 func (l *layout) stepBlock(g *grid, all []stepModel) {
-	first := g.table(frameRows+2, "Steps", []column{{name: "Lot"}, {name: "Route id"}, {name: "Route no"}, {name: "Step"}, {name: "Kind"},
+	first := g.table(frameRows+2, "Steps", []column{{name: "Lot"}, {name: "Route id"}, {"Route no", "1"}, {"Step", "1"}, {name: "Kind"},
 		{name: "Agent"}, {"Water in", "mg/kg"}, {"Water out", "mg/kg"}, {"Floor", "mg/kg"}, {"Hours total", "h"}, {"Hours attended", "h"},
 		{"Energy", "kWh"}, {"Cooling water", "L"}, {"Agent charged", "kg"}, {"Solvent lost", "L"}, {"Waste", "kg"}, {name: "Why it stops"}, {name: "State"}})
-	g.frozenRows, g.frozenColumns = first-1, 2
 	water := func(get func(stepModel) float64) string { return formatFor(each(all, get)...) }
 	in := water(func(s stepModel) float64 { return s.In.Water() * mgPerKg })
 	out := water(func(s stepModel) float64 { return s.Out.Water() * mgPerKg })
-	hours := decimals(2)
+	floor, hours := decimals(2), decimals(2)
 	for i, s := range all {
 		row := first + i
 		g.putRow(row, l.stepKey(s)...)
 		for c, x := range []cell{
 			text(plain, string(s.Kind)), text(words, s.Agent),
 			number(s.In.Water()*mgPerKg, "mg/kg").shown(in), number(s.Out.Water()*mgPerKg, "mg/kg").shown(out),
-			finite(s.Floor*mgPerKg, "mg/kg", "0.0"),
+			finite(s.Floor*mgPerKg, "mg/kg", floor),
 			number(s.HoursTotal, "h").shown(hours), number(s.HoursAttended, "h").shown(hours),
 			number(s.EnergyKWh, "kWh").shown(hours), number(s.CoolingWaterL, "L").shown(decimals(1)),
 			number(s.AgentKg, "kg").shown(decimals(3)), number(s.SolventLostL, "L").shown(decimals(3)),
@@ -106,7 +106,7 @@ func why(o steps.Outcome) string {
 
 // balanceBlock shows that nothing is lost on the way: in = out + removed.
 func (l *layout) balanceBlock(g *grid, all []stepModel) {
-	first := g.table(g.next(), "Balances of the steps", []column{{name: "Lot"}, {name: "Route id"}, {name: "Route no"}, {name: "Step"},
+	first := g.table(g.next(), "Balances of the steps", []column{{name: "Lot"}, {name: "Route id"}, {"Route no", "1"}, {"Step", "1"},
 		{"Water in", "kg"}, {"Water out", "kg"}, {"Water removed", "kg"}, {"Water open", "kg"},
 		{"Solvent in", "kg"}, {"Solvent out", "kg"}, {"Solvent removed", "kg"}, {"Solvent open", "kg"}})
 	for i, s := range all {
@@ -141,7 +141,7 @@ const (
 )
 
 func (l *layout) resultBlock(g *grid) {
-	first := g.table(g.next(), "Results of the routes, per batch", []column{{name: "Lot"}, {name: "Route id"}, {name: "Route no"},
+	first := g.table(g.next(), "Results of the routes, per batch", []column{{name: "Lot"}, {name: "Route id"}, {"Route no", "1"},
 		{"Water out", "mg/kg"}, {"Hours total", "h"}, {"Hours attended", "h"}, {"Energy", "kWh"}, {"Cooling water", "L"}, {"Solvent lost", "L"},
 		{"Litres delivered", "L"}, {"Agent", "kg"}, {"Waste", "kg"}, {"Emissions", "kg CO2e"}})
 	for _, c := range []int{14, 15, 16} {
@@ -174,8 +174,8 @@ func (l *layout) waterFormat() string {
 }
 
 func (l *layout) figureBlock(g *grid, all []stepModel) {
-	row := g.table(g.next(), "Figures of the steps", []column{{name: "Lot"}, {name: "Route id"}, {name: "Route no"}, {name: "Step"},
-		{name: "Figure"}, {}, {}, {}, {name: "Value"}, {name: "Unit"}})
+	row := g.table(g.next(), "Figures of the steps", []column{{name: "Lot"}, {name: "Route id"}, {"Route no", "1"}, {"Step", "1"},
+		{name: "Figure"}, {}, {}, {}, {"Value", "1"}, {name: "Unit"}})
 	for _, s := range all {
 		for _, f := range s.Figures {
 			unit := f.Unit
@@ -192,8 +192,8 @@ func (l *layout) figureBlock(g *grid, all []stepModel) {
 
 // settingBlock lists what was tuned; doses follow from it.
 func (l *layout) settingBlock(g *grid) {
-	row := g.table(g.next(), "Settings of the routes", []column{{name: "Lot"}, {name: "Route id"}, {name: "Route no"}, {},
-		{name: "Setting"}, {}, {}, {}, {name: "Value"}, {name: "Unit"}})
+	row := g.table(g.next(), "Settings of the routes", []column{{name: "Lot"}, {name: "Route id"}, {"Route no", "1"}, {},
+		{name: "Setting"}, {}, {}, {}, {"Value", "1"}, {name: "Unit"}})
 	for _, r := range l.routes {
 		put := func(name string, value cell, unit string) {
 			g.putRow(row, append(l.routeKey(r), blank(plain), text(plain, name))...)

@@ -55,18 +55,21 @@ var paints = map[look]paint{
 	fail:    {ink: "7A1B12", paper: "F5DFD8", bold: true, size: 10},
 }
 
+// typeface of the whole workbook.
+const typeface = "Arial"
+
 // styled is a look with a number format.
 type styled struct {
 	look   look
 	format string
-	number bool
+	number bool // a number, or the heading of numbers
 }
 
 func (s styled) style() *excelize.Style {
 	p := paints[s.look]
 	st := &excelize.Style{
-		Font:       &excelize.Font{Bold: p.bold, Size: p.size, Color: p.ink},
-		Alignment:  &excelize.Alignment{Vertical: "top", WrapText: p.wrap && !s.number},
+		Font:       &excelize.Font{Family: typeface, Bold: p.bold, Size: p.size, Color: p.ink},
+		Alignment:  &excelize.Alignment{Vertical: "top", WrapText: p.wrap},
 		Protection: &excelize.Protection{Locked: !p.unlocked},
 	}
 	if p.underline {
@@ -83,8 +86,12 @@ func (s styled) style() *excelize.Style {
 	if s.format != "" {
 		st.CustomNumFmt = &s.format
 	}
+	if !s.number && (s.look == plain || s.look == words || s.look == heading || s.look == program) {
+		st.Alignment.Horizontal, st.Alignment.Indent = "left", 1
+	}
 	if s.number {
-		st.Alignment.Horizontal = "right"
+		st.Alignment.Horizontal, st.Alignment.Indent = "right", 1
+		st.Alignment.WrapText = s.look == heading
 	}
 	return st
 }

@@ -43,16 +43,22 @@ func Write(w io.Writer, r *study.Report) error {
 	if err != nil {
 		return fmt.Errorf("workbook: %w", err)
 	}
-	l := &layout{model: m}
-	for _, sheet := range []func() *grid{l.inputs, l.priceList, l.steps, l.costs, l.compare, l.checks, l.sources} {
-		l.grids = append(l.grids, sheet())
-	}
+	l := lay(m)
 	grids := append([]*grid{l.readMe()}, l.grids...)
 	out := &file{title: "Drying routes: " + r.Job.Title, created: r.CatalogDate, grids: grids, names: l.names}
 	if err := out.write(w); err != nil {
 		return fmt.Errorf("workbook: %w", err)
 	}
 	return nil
+}
+
+// lay lays out all sheets but the first, which names them.
+func lay(m *model) *layout {
+	l := &layout{model: m}
+	for _, sheet := range []func() *grid{l.inputs, l.priceList, l.steps, l.costs, l.compare, l.checks, l.sources} {
+		l.grids = append(l.grids, sheet())
+	}
+	return l
 }
 
 // layout places the model on sheets. Each sheet notes where others find its rows.
@@ -73,7 +79,6 @@ type layout struct {
 	litreRows     rows // cost per litre
 	rankRows      rows // target and rank
 	compareRows   rows
-	routeRow      map[int]int // route number to place, 0-based
 }
 
 // rows is a run of rows; it is empty where last < first.

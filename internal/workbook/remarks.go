@@ -1,0 +1,138 @@
+package workbook
+
+import (
+	"slices"
+	"strings"
+)
+
+// remark is a text that holds for some routes of some lots.
+type remark struct {
+	level, text string
+	routes      map[int][]string // ids by lot number; none: the whole lot
+}
+
+// remarks collects texts, each once, in the order in which they come.
+type remarks struct{ all []*remark }
+
+func (rs *remarks) add(level, text string, lot int, routes ...string) {
+	text = oneLine(text)
+	if text == "" {
+		return
+	}
+	for _, r := range rs.all {
+		if r.level == level && r.text == text {
+			r.routes[lot] = append(r.routes[lot], routes...)
+			return
+		}
+	}
+	rs.all = append(rs.all, &remark{level, text, map[int][]string{lot: routes}})
+}
+
+// whom names lots and routes in as few words as possible.
+func (l *layout) whom(r *remark) string {
+	var parts []string
+	every := true
+	for _, lot := range l.lots {
+		ids, ok := r.routes[lot.no]
+		switch {
+		case !ok:
+			every = every && len(lot.routes) == 0
+		case len(ids) == 0:
+			parts, every = append(parts, lot.Job.Name), false
+		case len(ids) == len(lot.routes):
+			parts = append(parts, lot.Job.Name+": every route")
+		default:
+			parts, every = append(parts, lot.Job.Name+": "+strings.Join(ids, ", ")), false
+		}
+	}
+	if every && len(parts) > 0 {
+		return "every route"
+	}
+	return strings.Join(parts, "; ")
+}
+
+// listBlock starts a block of text whose last column runs over the columns to its
+// right, and returns the first row of entries.
+func (l *layout) listBlock(g *grid, name, a, b, c string) int {
+	row := max(g.last(), g.drawnTo()) + 2
+	g.put(1, row, text(block, name))
+	g.putRow(row+1, text(heading, a), text(heading, b), text(heading, c))
+	for column := 4; column <= len(g.widths); column++ {
+		g.put(column, row+1, blank(heading))
+	}
+	g.merged = append(g.merged, merge{row + 1, 3, len(g.widths)})
+	return row + 2
+}
+
+func (g *grid) entry(row int, a, b, c string) {
+	g.putRow(row, text(words, oneLine(a)), text(words, oneLine(b)))
+	g.across(3, len(g.widths), row, c)
+}
+
+func (l *layout) excludedBlock(g *grid) {
+	row := 0
+	for _, lot := range l.lots {
+		for _, x := range lot.Excluded {
+			if row == 0 {
+				row = l.listBlock(g, "Not offered, and why", "Lot", "Route", "Reason and source")
+			}
+			g.entry(row, lot.Job.Name, x.ID, cited(x.Reason, x.Source))
+			row++
+		}
+	}
+}
+
+func cited(s, source string) string {
+	if source == "" {
+		return s
+	}
+	return s + " [" + source + "]"
+}
+
+var levels = []string{"danger", "caution", "info"}
+
+// cautionBlock lists each caution once, the gravest first, with the routes it is for.
+func (l *layout) cautionBlock(g *grid) {
+	var rs remarks
+	for _, r := range l.routes {
+		for _, c := range r.Cautions {
+			rs.add(c.Level, cited(c.Text, c.Source), r.lot.no, r.ID)
+		}
+	}
+	if len(rs.all) == 0 {
+		return
+	}
+	slices.SortStableFunc(rs.all, func(a, b *remark) int { return slices.Index(levels, a.level) - slices.Index(levels, b.level) })
+	row := l.listBlock(g, "Cautions: site rules, safety data sheets, local codes and licensed practice decide", "Level", "Lots and routes", "Caution and source")
+	for _, r := range rs.all {
+		g.entry(row, r.level, l.whom(r), r.text)
+		row++
+	}
+}
+
+// noteBlock says what must be known of a lot or a route besides its numbers.
+func (l *layout) noteBlock(g *grid) {
+	var rs remarks
+	for _, lot := range l.lots {
+		for _, s := range append([]string{lot.NothingToDo, lot.CannotShow}, lot.Warnings...) {
+			rs.add("lot", s, lot.no)
+		}
+	}
+	for _, r := range l.routes {
+		for _, s := range slices.Concat(r.Route.Warnings, r.Run.Warnings) {
+			rs.add("route", s, r.lot.no, r.ID)
+		}
+	}
+	if len(rs.all)+len(l.report.Warnings) == 0 {
+		return
+	}
+	row := l.listBlock(g, "Notes", "About", "Lots and routes", "Note")
+	for _, s := range l.report.Warnings {
+		g.entry(row, "job", l.report.Job.File, s)
+		row++
+	}
+	for _, r := range rs.all {
+		g.entry(row, r.level, l.whom(r), r.text)
+		row++
+	}
+}
