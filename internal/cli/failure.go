@@ -6,6 +6,8 @@ import (
 	"fmt"
 
 	"github.com/urfave/cli/v2"
+
+	"parch/internal/routes"
 )
 
 // Exit status.
@@ -47,6 +49,9 @@ func failed(err error) error {
 	}
 	if errors.Is(err, context.Canceled) {
 		return &failure{status: statusFailed, err: errors.New("interrupted; nothing more was written")}
+	}
+	if errors.Is(err, routes.ErrSettings) {
+		return &failure{status: statusMisused, err: err, hint: "take the settings from a run of the same job, or leave --settings-from out"}
 	}
 	return &failure{status: statusFailed, err: err}
 }

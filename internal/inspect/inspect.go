@@ -38,6 +38,9 @@ type Pair struct {
 	catalog.Verdict
 }
 
+// NoData is the word for a pair that the matrix does not know: it is refused.
+const NoData = "no data"
+
 // kelvinAt0C is 0 °C in kelvin.
 const kelvinAt0C = 273.15
 
@@ -67,10 +70,10 @@ func Solvent(c *catalog.Catalog, s *catalog.Solvent, pressurePa, receiverK float
 		return nil, err
 	}
 	if sheet.Floor, err = m.TrapFloor(receiverK, pressurePa); err != nil {
-		return nil, err
+		sheet.Floor = thermo.Floor{Return: thermo.None, Reason: err.Error(), Water: math.NaN()}
 	}
 	sheet.Pairs = pairs(c, s)
-	sheet.Sources = sources(c, s)
+	sheet.Sources = sources(c, s, sheet.Pairs)
 	sheet.Notes = notes(sheet)
 	return sheet, nil
 }
@@ -96,16 +99,18 @@ func solubility(m *thermo.Mixture, boilingK float64) (table []Solubility, err er
 
 func pairs(c *catalog.Catalog, s *catalog.Solvent) (list []Pair) {
 	for key := range c.Agents {
-		if v, ok := c.Verdict(s, key); ok {
-			list = append(list, Pair{key, v})
+		v, ok := c.Verdict(s, key)
+		if !ok {
+			v = catalog.Verdict{Word: NoData}
 		}
+		list = append(list, Pair{key, v})
 	}
 	slices.SortFunc(list, func(a, b Pair) int { return strings.Compare(a.Agent, b.Agent) })
 	return list
 }
 
-// sources are those that the numbers of the sheet rest on, sorted by id.
-func sources(c *catalog.Catalog, s *catalog.Solvent) []catalog.Source {
+// sources are those that the sheet rests on, sorted by id.
+func sources(c *catalog.Catalog, s *catalog.Solvent, pairs []Pair) []catalog.Source {
 	ids := []string{
 		s.BoilingPoint.Source, s.MeltingPoint.Source, s.VapourPressure.Source, s.Density.Source, s.HeatOfVaporization.Source,
 		s.Water.Source, s.Hazards.Source,
@@ -113,6 +118,11 @@ func sources(c *catalog.Catalog, s *catalog.Solvent) []catalog.Source {
 	for _, v := range []*catalog.Value{s.FlashPoint, s.Autoignition} {
 		if v != nil {
 			ids = append(ids, v.Source)
+		}
+	}
+	for _, p := range pairs {
+		if !p.Allowed() {
+			ids = append(ids, p.Source)
 		}
 	}
 	slices.Sort(ids)
@@ -134,8 +144,14 @@ func notes(s *Sheet) (list []string) {
 		}
 	}
 	outside("the boiling point", s.BoilingK)
+	if s.BoilingK < s.Solvent.Pure.MeltingK {
+		list = append(list, fmt.Sprintf("%s freezes above the boiling point computed for this pressure: no liquid boils", s.Solvent.Name))
+	}
 	if s.Azeotrope.Kind != thermo.NoAzeotrope {
 		outside("the azeotrope", s.Azeotrope.TempK)
+		if s.Azeotrope.TempK < kelvinAt0C {
+			list = append(list, "the azeotrope lies below 0 °C, where water freezes: it cannot be run")
+		}
 	}
 	if s.Floor.Return != thermo.None {
 		outside("the receiver", s.ReceiverK)

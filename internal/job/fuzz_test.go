@@ -33,17 +33,19 @@ func FuzzRead(f *testing.F) {
 		case j != nil || !errors.As(err, &invalid):
 			t.Errorf("job %v with error %v", j, err)
 		default:
-			checkMessages(t, invalid)
+			checkMessages(t, invalid, strings.Contains(string(data), "%!"))
 		}
 	})
 }
 
-func checkMessages(t *testing.T, invalid *document.Invalid) {
+// checkMessages looks for messages that are unprintable, endless or wrongly formatted;
+// "%!" shows the latter unless it was typed.
+func checkMessages(t *testing.T, invalid *document.Invalid, typed bool) {
 	if invalid.Count() == 0 || len(invalid.Lines()) > 51 {
 		t.Errorf("%d messages for %d problems", len(invalid.Lines()), invalid.Count())
 	}
 	for _, line := range invalid.Lines() {
-		if !strings.HasPrefix(line, "job.yaml:") || strings.ContainsAny(line, "\n\r\x1b\x00") || strings.Contains(line, "%!") || len(line) > 3000 {
+		if !strings.HasPrefix(line, "job.yaml:") || strings.ContainsAny(line, "\n\r\x1b\x00") || !typed && strings.Contains(line, "%!") || len(line) > 3000 {
 			t.Errorf("message %q", line)
 		}
 	}

@@ -120,7 +120,12 @@ func (p *page) solubility(s *inspect.Sheet) {
 		}
 		rows[i] = []string{quantity.Significant(float64(celsius(row.TempK)), 3), holds}
 	}
-	if mixes {
+	switch {
+	case len(rows) == 0:
+		p.line("")
+		p.say(3, 4, "It is not liquid between 0 and 80 °C at this pressure.")
+		return
+	case mixes:
 		p.line("")
 		p.say(3, 4, "Water and %s mix in all proportions from 0 to 80 °C.", s.Solvent.Name)
 		return
@@ -169,7 +174,7 @@ func (p *page) pairs(pairs []inspect.Pair) {
 		return
 	}
 	p.heading("Drying agents:")
-	for _, word := range []string{"ok", "caution", "unsuitable", "dangerous"} {
+	for _, word := range []string{"ok", "caution", "unsuitable", "dangerous", inspect.NoData} {
 		var names []string
 		for _, pair := range pairs {
 			if pair.Word == word {
@@ -181,7 +186,7 @@ func (p *page) pairs(pairs []inspect.Pair) {
 		}
 	}
 	for _, pair := range pairs {
-		if !pair.Allowed() {
+		if !pair.Allowed() && pair.Reason != "" {
 			p.say(5, 4, "%s: %s%s", pair.Agent, pair.Reason, cite(pair.Source))
 		}
 	}

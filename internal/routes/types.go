@@ -42,6 +42,9 @@ type Settings struct {
 // ErrRefused means that the physics refuses a step of a route on this lot.
 var ErrRefused = errors.New("refused")
 
+// ErrSettings means that settings do not belong to a route.
+var ErrSettings = errors.New("settings do not fit")
+
 // Fit reports settings that do not belong to the route.
 func (s Settings) Fit(r Route) error {
 	soaks := 0
@@ -51,16 +54,16 @@ func (s Settings) Fit(r Route) error {
 		}
 	}
 	if len(s.HandOverMgPerKg) != len(r)-1 || len(s.SoakHours) != soaks || len(s.Sieve) != soaks {
-		return fmt.Errorf("%s: the given settings do not fit: %d hand-overs, %d soak hours, %d sieve choices", r.ID(), len(s.HandOverMgPerKg), len(s.SoakHours), len(s.Sieve))
+		return fmt.Errorf("%s: %w: %d hand-overs, %d soak hours, %d sieve choices", r.ID(), ErrSettings, len(s.HandOverMgPerKg), len(s.SoakHours), len(s.Sieve))
 	}
 	for _, h := range s.SoakHours {
 		if !(h > 0) {
-			return fmt.Errorf("%s: a soak of %g h is not possible", r.ID(), h)
+			return fmt.Errorf("%s: %w: a soak of %g h is not possible", r.ID(), ErrSettings, h)
 		}
 	}
 	for _, after := range s.Sieve {
 		if after != Regenerate && after != Discard {
-			return fmt.Errorf("%s: sieve %q is not one of %s, %s", r.ID(), after, Regenerate, Discard)
+			return fmt.Errorf("%s: %w: sieve %q is not one of %s, %s", r.ID(), ErrSettings, after, Regenerate, Discard)
 		}
 	}
 	return nil

@@ -28,7 +28,7 @@ func (b *boiling) outcome(feed Lot, goal float64, why Stop) Outcome {
 
 	lost := b.losses(refluxS)
 	solventOutKg := b.solvent*b.m.Solvent.MolarMassKgPerMol - lost.vapourKg
-	waterOutKg, regainedKg := b.waterOut(solventOutKg)
+	waterOutKg, regainedKg := b.waterOut(solventOutKg, lost.vapourWaterKg)
 	o := Outcome{
 		Kind: Trap, In: feed,
 		Out:           Lot{SolventKg: n * solventOutKg, WaterKg: n * waterOutKg, TempK: b.rig.RoomK},
@@ -51,7 +51,7 @@ func (b *boiling) outcome(feed Lot, goal float64, why Stop) Outcome {
 		{SolventWaste, "organic layer left in the receiver", n * (lost.heldSolventKg + lost.heldWaterKg)},
 	}
 	o.account(b.m.Solvent, b.rig.RoomK)
-	o.Balance.WaterRemovedKg = n * (lost.aqueousWaterKg + lost.heldWaterKg - regainedKg)
+	o.Balance.WaterRemovedKg = n * (lost.aqueousWaterKg + lost.heldWaterKg + lost.vapourWaterKg - regainedKg)
 	o.Balance.HeatInJ = n * b.netW() * hotS
 	o.Balance.HeatUsedJ = n * (b.heatUpJ + b.boilUpJ + b.netW()*(refluxS-boilS))
 	o.Figures = []Figure{
@@ -70,8 +70,8 @@ func (b *boiling) outcome(feed Lot, goal float64, why Stop) Outcome {
 
 // waterOut is the water in the product. Filling the receiver can take a small
 // charge below what a trap can claim; droplets and moist air bring it back.
-func (b *boiling) waterOut(solventOutKg float64) (waterKg, regainedKg float64) {
-	waterKg = b.water * b.m.Water.MolarMassKgPerMol
+func (b *boiling) waterOut(solventOutKg, lostKg float64) (waterKg, regainedKg float64) {
+	waterKg = b.water*b.m.Water.MolarMassKgPerMol - lostKg
 	claimedKg := solventOutKg * b.lowest / (1 - b.lowest)
 	return math.Max(waterKg, claimedKg), math.Max(0, claimedKg-waterKg)
 }
@@ -79,18 +79,20 @@ func (b *boiling) waterOut(solventOutKg float64) (waterKg, regainedKg float64) {
 type trapLosses struct {
 	aqueousSolventKg, aqueousWaterKg float64
 	heldSolventKg, heldWaterKg       float64
-	vapourKg                         float64
+	vapourKg, vapourWaterKg          float64 // past the condenser, taken as wet as the pot
 }
 
 func (b *boiling) losses(refluxS float64) trapLosses {
 	l := b.eq.Floor.Layers
 	water, solvent := b.m.Water.MolarMassKgPerMol, b.m.Solvent.MolarMassKgPerMol
+	vapourShare := b.rules.VapourLossPerDay * refluxS / secondsPerDay
 	return trapLosses{
 		aqueousSolventKg: b.aqueousMol * (1 - l.XAqueous) * solvent,
 		aqueousWaterKg:   b.aqueousMol * l.XAqueous * water,
 		heldSolventKg:    b.heldSolventMol * solvent,
 		heldWaterKg:      b.heldWaterMol * water,
-		vapourKg:         b.solvent * solvent * b.rules.VapourLossPerDay * refluxS / secondsPerDay,
+		vapourKg:         b.solvent * solvent * vapourShare,
+		vapourWaterKg:    b.water * water * vapourShare,
 	}
 }
 

@@ -5,7 +5,6 @@ import (
 
 	"parch/catalog"
 	"parch/internal/routes"
-	"parch/internal/steps"
 )
 
 // cautions that apply to a route on a lot, in the catalog's order.
@@ -51,7 +50,3 @@ func applies(c catalog.Caution, k *routes.Case, r routes.Route) bool {
 }
 
 func anyStep(r routes.Route, ok func(routes.Stage) bool) bool { return slices.ContainsFunc(r, ok) }
-
-func uses(r routes.Route, kind steps.Kind) bool {
-	return anyStep(r, func(s routes.Stage) bool { return s.Kind == kind })
-}

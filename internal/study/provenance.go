@@ -131,7 +131,7 @@ func (p *shelf) history(key string) {
 func (p *shelf) prices(r *Report) {
 	for _, item := range slices.Sorted(maps.Keys(r.Book)) {
 		price := r.Book[item]
-		p.note("price of "+price.Label, price.PerUnit.String()+" "+r.Job.Currency+" per "+price.Unit,
+		p.note("price of "+price.Label, price.PerUnit.String()+" "+r.Job.Currency+" per "+unitWord(price.Unit),
 			catalog.Origin{Source: price.Source, Confidence: catalog.Confidence(price.Confidence), Note: price.Note})
 	}
 }
@@ -150,4 +150,17 @@ func (p *shelf) sorted() []Weak {
 		out = append(out, p.weak[what])
 	}
 	return out
+}
+
+// unitWord is the unit of a price as it is read.
+func unitWord(unit string) string {
+	switch unit {
+	case "kwh":
+		return "kWh"
+	case "m3":
+		return "m³"
+	case "each":
+		return "piece"
+	}
+	return unit
 }

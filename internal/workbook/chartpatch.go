@@ -54,6 +54,20 @@ func turnBars(part []byte) ([]byte, error) {
 	return append(bytes.Clone(categories), valueAxis...), nil
 }
 
+// anchored is a chart as the chart writer anchors it when it shall keep its size:
+// it puts the size into the end of the anchor, as an offset far beyond one cell,
+// which readers may cut down to that cell.
+var anchored = regexp.MustCompile(`<xdr:twoCellAnchor editAs="oneCell">(<xdr:from>.*?</xdr:from>)<xdr:to>` +
+	`<xdr:col>\d+</xdr:col><xdr:colOff>(\d+)</xdr:colOff><xdr:row>\d+</xdr:row><xdr:rowOff>(\d+)</xdr:rowOff></xdr:to>(.*?)</xdr:twoCellAnchor>`)
+
+// anchorBySize anchors every chart at its first cell and gives it its size.
+func anchorBySize(part []byte) ([]byte, error) {
+	if n, found := bytes.Count(part, []byte("<xdr:twoCellAnchor")), len(anchored.FindAll(part, -1)); n == 0 || n != found {
+		return nil, fmt.Errorf("%d anchors, %d of them as expected", n, found)
+	}
+	return anchored.ReplaceAll(part, []byte(`<xdr:oneCellAnchor>$1<xdr:ext cx="$2" cy="$3"></xdr:ext>$4</xdr:oneCellAnchor>`)), nil
+}
+
 var barFill = regexp.MustCompile(`(</tx><spPr><a:solidFill><a:srgbClr val="[0-9A-F]{6}"></a:srgbClr></a:solidFill>)</spPr>`)
 
 // outlineBars draws a dark line around every bar: some of the hues are pale.

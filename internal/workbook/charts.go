@@ -3,6 +3,7 @@ package workbook
 import (
 	"fmt"
 	"math"
+	"slices"
 
 	"github.com/xuri/excelize/v2"
 
@@ -51,8 +52,8 @@ var headColours = map[steps.Head]string{
 }
 
 const (
-	costWidth   = 840 // pixels
-	waterWidth  = 840
+	costWidth   = 755 // pixels
+	waterWidth  = 745
 	waterColumn = 9 // clear of the chart to its left
 )
 
@@ -78,14 +79,14 @@ func (g *grid) draw(column, row, width, height int, name string, c *excelize.Cha
 	g.charts = append(g.charts, placed{column, row, height, c})
 }
 
-// roomForChart is the next free row, or the first row of the next printed page
-// where a chart of that height would be cut by the end of this one.
+// roomForChart is the next free row. A page break goes before it where a chart of
+// that height would be cut by the end of the printed page.
 func (g *grid) roomForChart(points float64) int {
 	row := max(g.last(), g.drawnTo()) + 2
-	page := printableHeight / g.scale()
+	page := 0.95 * printableHeight / g.scale() // readers differ in the scale by a few per cent
 	titles := g.span(g.titles())
 	if used := g.pageUsed(row, page, titles); used+points > page && points < page-titles {
-		row += int(math.Ceil((page - used) / rowPoints))
+		g.breaks = append(g.breaks, row-1) // the frame of the chart needs a little room above
 	}
 	return row
 }
@@ -107,7 +108,7 @@ func (g *grid) pageUsed(row int, page, titles float64) float64 {
 	used := 0.0
 	for r := 1; r < row; r++ {
 		h := g.span(r, r)
-		if used+h > page {
+		if used+h > page || slices.Contains(g.breaks, r) {
 			used = titles
 		}
 		used += h

@@ -201,7 +201,7 @@ func (l *layout) programTests() (tests []test) {
 			test{name + "cost per litre", derived(on(sheetCosts, at(litreCost, litre)), r.perLitre).shown(moneyFormat),
 				number(float(r.Bill.PerLitre), l.money("L")).shown(moneyFormat), moneyTolerance, l.money("L")},
 			test{name + "rank, 0 where the target is missed", derived(on(sheetCosts, at(rankPlace, rank)), float64(r.rank)).shown("0"),
-				count(r.Rank), 0, "1"})
+				count(r.Rank), 0, "rank"})
 	}
 	return tests
 }

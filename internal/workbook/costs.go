@@ -54,7 +54,7 @@ var headNames = map[steps.Head]string{
 
 func (l *layout) costs() *grid {
 	g := newGrid(sheetCosts, "The bill of each route: quantity × price = amount, for one batch. Below the lines: cost by head, cost per litre, target and rank. Nothing is rounded, only shown to the cent.",
-		tabWork, checkCell(), 20, 30, 9, 13, 10, 17, 11, 11, 11, 11, 11, 11, 11, 11, 52)
+		tabWork, checkCell(), 26, 30, 9, 13, 10, 17, 11, 11, 11, 11, 11, 11, 11, 11, 52)
 	g.mixed, g.frozenRows, g.frozenColumns = true, frameRows, 3 // the blocks share only these columns
 	l.billBlock(g)
 	l.headBlock(g)
@@ -89,9 +89,9 @@ func (l *layout) billRow(g *grid, row int, r *routeModel, line lineModel) {
 	quantity := decimals(mostDecimals)
 	g.putRow(row, append(l.routeKey(r),
 		text(plain, headNames[line.Head]), count(line.Step), text(words, line.Item),
-		number(line.quantity, line.Unit).shown(quantity), text(plain, line.Unit), text(plain, per),
+		number(line.quantity, symbol(line.Unit)).shown(quantity), text(plain, symbol(line.Unit)), text(plain, per),
 		derived(fmt.Sprintf(`IF(%s="year",%s,1)`, at(billPer, row), l.lotName(r.lot, "batches_per_year")), line.shared).shown(formatFor(line.shared)),
-		derived(at(billQty, row)+"/"+at(billShared, row), line.perBatch).in(line.Unit).shown(quantity),
+		derived(at(billQty, row)+"/"+at(billShared, row), line.perBatch).in(symbol(line.Unit)).shown(quantity),
 		derived(priceName(line.Item, line.Unit), line.price).in(l.money(line.Unit)).shown(l.priceFormat()),
 		derived(at(billBatch, row)+"*"+at(billPrice, row), line.amount).in(l.currency()).shown(moneyFormat),
 		text(plain, l.money(line.Unit)), text(words, line.Basis))...)

@@ -128,8 +128,13 @@ func (e *emitter) sheet(g *grid) error {
 			return err
 		}
 	}
-	for i, row := range g.rows {
-		if err := e.row(sw, g, i+1, row); err != nil {
+	for i := range max(g.last(), g.drawnTo()) { // rows under charts too, so that their height is known
+		if err := e.row(sw, g, i+1); err != nil {
+			return err
+		}
+	}
+	for _, row := range g.breaks {
+		if err := sw.InsertPageBreak(at(1, row)); err != nil {
 			return err
 		}
 	}
@@ -156,7 +161,11 @@ func panes(g *grid) *excelize.Panes {
 	return p
 }
 
-func (e *emitter) row(sw *excelize.StreamWriter, g *grid, row int, cells []cell) error {
+func (e *emitter) row(sw *excelize.StreamWriter, g *grid, row int) error {
+	var cells []cell
+	if row <= len(g.rows) {
+		cells = g.rows[row-1]
+	}
 	values := make([]any, len(cells))
 	for i, c := range cells {
 		if c == (cell{}) {
@@ -187,7 +196,8 @@ func (e *emitter) style(s styled) (int, error) {
 const (
 	lineHeight   = 13.5 // points
 	tallest      = 400  // points, below the limit of a row
-	charsPerUnit = 1.2  // characters of text that fit in a unit of column width
+	charsPerUnit = 1.3  // characters of text that fit in a unit of column width
+	charsPerBold = 1.15
 )
 
 // height gives a row room for its wrapped text.
@@ -196,11 +206,18 @@ func (g *grid) height(row int) float64 {
 		return h
 	}
 	lines, size := 1, 10.0
+	if row > len(g.rows) {
+		return rowPoints
+	}
 	for i, c := range g.rows[row-1] {
 		p := paints[c.look]
 		size = max(size, p.size)
 		if s, ok := c.value.(string); ok && p.wrap && i < len(g.widths) {
-			lines = max(lines, wrapped(s, g.roomFor(i+1, row)*charsPerUnit))
+			fit := charsPerUnit
+			if p.bold {
+				fit = charsPerBold
+			}
+			lines = max(lines, wrapped(s, (g.roomFor(i+1, row)-1)*fit))
 		}
 	}
 	return min(tallest, float64(lines)*lineHeight*size/10+1.5)

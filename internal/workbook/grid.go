@@ -95,6 +95,7 @@ type grid struct {
 	flags         []flag
 	charts        []placed
 	merged        []merge
+	breaks        []int // rows that start a printed page
 }
 
 // merge is a run of cells in a row that holds one text. Numbers are never merged.

@@ -3,6 +3,7 @@ package workbook
 import (
 	"fmt"
 	"math"
+	"strings"
 
 	"parch/internal/quantity"
 )
@@ -230,10 +231,11 @@ func (l *layout) defaultsBlock(g *grid) {
 	g.put(1, g.next(), text(block, "Defaults: what the job left to the catalog"))
 	for _, d := range defaults {
 		note := d.Source
-		for _, more := range []string{d.Confidence, d.Date} {
-			if more != "" {
-				note += "; " + more
-			}
+		if strings.ReplaceAll(d.Confidence, " ", "-") != d.Source {
+			note += "; " + d.Confidence
+		}
+		if d.Date != "" {
+			note += "; " + d.Date
 		}
 		fact(g, "", d.Key, text(program, d.Text), "", note)
 	}

@@ -14,7 +14,7 @@ const mostMoney = 1e7
 
 func (l *layout) priceList() *grid {
 	g := newGrid(sheetPrices, "What things cost. Edit a blue cell and every cost, total and rank follows. Prices are dated; check them before a decision.",
-		tabInput, checkCell(), 27, 36, 13, 13, 50, 13, 15, 16, 11, 12, 14, 24)
+		tabInput, checkCell(), 27, 36, 13, 13, 50, 13, 15, 16, 11, 12, 17, 29)
 	first := g.table(frameRows+2, "Prices, "+l.currency(), priceColumns)
 	g.frozenRows = first - 1
 	format := l.priceFormat()

@@ -72,11 +72,15 @@ func (g *grid) entry(row int, a, b, c string) {
 func (l *layout) excludedBlock(g *grid) {
 	row := 0
 	for _, lot := range l.lots {
+		var rs remarks
 		for _, x := range lot.Excluded {
+			rs.add("", cited(x.Reason, x.Source), lot.no, x.ID)
+		}
+		for _, r := range rs.all {
 			if row == 0 {
-				row = l.listBlock(g, "Not offered, and why", "Lot", "Route", "Reason and source")
+				row = l.listBlock(g, "Not offered, and why", "Lot", "Routes", "Reason and source")
 			}
-			g.entry(row, lot.Job.Name, x.ID, cited(x.Reason, x.Source))
+			g.entry(row, lot.Job.Name, strings.Join(r.routes[lot.no], ", "), r.text)
 			row++
 		}
 	}

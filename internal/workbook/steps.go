@@ -31,7 +31,7 @@ func (l *layout) allSteps() (out []stepModel) {
 
 func (l *layout) steps() *grid {
 	g := newGrid(sheetSteps, "What each step does, computed by the program. These values change only by a new run; the column State says when one is needed.",
-		tabWork, checkCell(), 20, 30, 8, 9, 10, 14, 10, 10, 10, 10, 10, 10, 10, 10, 10, 10, 44, 18)
+		tabWork, checkCell(), 26, 30, 8, 9, 10, 14, 10, 10, 10, 10, 10, 10, 12, 10, 10, 10, 44, 18)
 	g.mixed, g.frozenRows, g.frozenColumns = true, frameRows, 3 // the blocks share only these columns
 	all := l.allSteps()
 	l.stepBlock(g, all)

@@ -86,11 +86,13 @@ func (s styled) style() *excelize.Style {
 	if s.format != "" {
 		st.CustomNumFmt = &s.format
 	}
-	if !s.number && (s.look == plain || s.look == words || s.look == heading || s.look == program) {
+	switch s.look {
+	case title, purpose, block, link, message:
+	default:
 		st.Alignment.Horizontal, st.Alignment.Indent = "left", 1
 	}
 	if s.number {
-		st.Alignment.Horizontal, st.Alignment.Indent = "right", 1
+		st.Alignment.Horizontal = "right"
 		st.Alignment.WrapText = s.look == heading
 	}
 	return st

@@ -106,7 +106,24 @@ func (l *layout) money(per string) string {
 	if per == "" {
 		return l.currency()
 	}
-	return l.currency() + "/" + per
+	return l.currency() + "/" + symbol(per)
+}
+
+// symbol is how the unit of a price is written for the reader.
+func symbol(unit string) string {
+	switch unit {
+	case "hour":
+		return "h"
+	case "kwh":
+		return "kWh"
+	case "litre":
+		return "L"
+	case "m3":
+		return "m³"
+	case "each":
+		return "piece"
+	}
+	return unit
 }
 
 func sortedKeys[K cmp.Ordered, V any](m map[K]V) []K { return slices.Sorted(maps.Keys(m)) }

@@ -79,6 +79,8 @@ func (w *file) patchPart(name string, part []byte) ([]byte, error) {
 		return sortDefaults(part), nil
 	case strings.HasPrefix(name, "xl/charts/chart"):
 		return patchChart(part, w.valuesAt)
+	case strings.HasPrefix(name, "xl/drawings/drawing"):
+		return anchorBySize(part)
 	}
 	return part, nil
 }

@@ -1,0 +1,188 @@
+package workbook
+
+import (
+	"bytes"
+	"encoding/xml"
+	"io"
+	"regexp"
+	"slices"
+	"strings"
+	"testing"
+)
+
+// childOrder is the order of children that the schema of the file format
+// prescribes (ISO/IEC 29500-1, DrawingML charts; from memory), as far as charts
+// here use it.
+var childOrder = map[string][]string{
+	"chartSpace": {"date1904", "lang", "roundedCorners", "AlternateContent", "style", "clrMapOvr", "pivotFmts", "protection", "chart", "spPr", "txPr", "externalData", "printSettings", "userShapes"},
+	"chart":      {"title", "autoTitleDeleted", "pivotFmts", "view3D", "floor", "sideWall", "backWall", "plotArea", "legend", "plotVisOnly", "dispBlanksAs", "showDLblsOverMax"},
+	"title":      {"tx", "layout", "overlay", "spPr", "txPr"},
+	"barChart":   {"barDir", "grouping", "varyColors", "ser", "dLbls", "gapWidth", "overlap", "serLines", "axId"},
+	"lineChart":  {"grouping", "varyColors", "ser", "dLbls", "dropLines", "hiLowLines", "upDownBars", "marker", "smooth", "axId"},
+	"ser":        {"idx", "order", "tx", "spPr", "invertIfNegative", "pictureOptions", "marker", "dPt", "dLbls", "trendline", "errBars", "cat", "val", "smooth", "shape"},
+	"catAx": {"axId", "scaling", "delete", "axPos", "majorGridlines", "minorGridlines", "title", "numFmt", "majorTickMark", "minorTickMark", "tickLblPos",
+		"spPr", "txPr", "crossAx", "crosses", "crossesAt", "auto", "lblAlgn", "lblOffset", "noMultiLvlLbl"},
+	"valAx": {"axId", "scaling", "delete", "axPos", "majorGridlines", "minorGridlines", "title", "numFmt", "majorTickMark", "minorTickMark", "tickLblPos",
+		"spPr", "txPr", "crossAx", "crosses", "crossesAt", "crossBetween", "majorUnit", "minorUnit", "dispUnits"},
+	"scaling":  {"logBase", "orientation", "max", "min"},
+	"strRef":   {"f", "strCache"},
+	"strCache": {"ptCount", "pt"},
+	"numRef":   {"f", "numCache"},
+	"numCache": {"formatCode", "ptCount", "pt"},
+	"legend":   {"legendPos", "legendEntry", "layout", "overlay", "spPr", "txPr"},
+}
+
+type element struct {
+	XMLName  xml.Name
+	Children []element `xml:",any"`
+	Text     string    `xml:",chardata"`
+}
+
+func (e element) all(name string) (out []element) {
+	for _, c := range e.Children {
+		if c.XMLName.Local == name {
+			out = append(out, c)
+		}
+		out = append(out, c.all(name)...)
+	}
+	return out
+}
+
+func charts(t *testing.T, b *book) map[string]element {
+	t.Helper()
+	out := map[string]element{}
+	for name, part := range b.parts {
+		if strings.HasPrefix(name, "xl/charts/chart") {
+			var e element
+			if err := xml.Unmarshal(part, &e); err != nil {
+				t.Fatal(err)
+			}
+			out[name] = e
+		}
+	}
+	return out
+}
+
+func TestChartsFollowTheSchema(t *testing.T) {
+	for name, e := range charts(t, readBook(t, written(t, demo(t)))) {
+		inOrder(t, name, e)
+	}
+}
+
+func inOrder(t *testing.T, where string, e element) {
+	where += "/" + e.XMLName.Local
+	if order, ok := childOrder[e.XMLName.Local]; ok && strings.HasSuffix(e.XMLName.Space, "/chart") {
+		last := 0
+		for _, c := range e.Children {
+			i := slices.Index(order, c.XMLName.Local)
+			if i < 0 {
+				t.Errorf("%s: %s does not belong there", where, c.XMLName.Local)
+			} else if i < last {
+				t.Errorf("%s: %s comes too late", where, c.XMLName.Local)
+			}
+			last = max(last, i)
+		}
+	}
+	for _, c := range e.Children {
+		inOrder(t, where, c)
+	}
+}
+
+// Each lot with routes has a chart of its costs and one of its water, and what
+// they draw is there.
+func TestChartsDrawWhatIsThere(t *testing.T) {
+	r := demo(t)
+	b := readBook(t, written(t, r))
+	all := charts(t, b)
+	want := 0
+	for _, lot := range r.Lots {
+		if len(lot.Routes) > 0 {
+			want += 2
+		}
+	}
+	if len(all) != want {
+		t.Errorf("%d charts, want %d", len(all), want)
+	}
+	for name, e := range all {
+		for _, f := range e.all("f") {
+			sheet, place, _ := strings.Cut(strings.ReplaceAll(f.Text, "$", ""), "!")
+			from, to, ok := strings.Cut(place, ":")
+			if !ok {
+				to = from
+			}
+			if !anyFilled(t, b.cells[sheet], from, to) {
+				t.Errorf("%s draws %s, where nothing is", name, f.Text)
+			}
+		}
+		if n := len(e.all("ptCount")); n != len(e.all("f")) {
+			t.Errorf("%s: %d references, %d of them with values", name, len(e.all("f")), n)
+		}
+		if len(e.all("logBase")) == 0 && len(e.all("barChart")) == 0 {
+			t.Errorf("%s is neither a chart of bars nor on a log axis", name)
+		}
+	}
+	size := regexp.MustCompile(`<xdr:oneCellAnchor><xdr:from>[^T]*?</xdr:from><xdr:ext cx="\d{7}" cy="\d{7}"></xdr:ext><xdr:graphicFrame`)
+	drawing := string(b.parts["xl/drawings/drawing1.xml"])
+	if n := len(size.FindAllString(drawing, -1)); n != want || strings.Contains(drawing, "twoCellAnchor") {
+		t.Errorf("%d charts are anchored by their size, want %d", n, want)
+	}
+	if n := strings.Count(drawing, ` descr="`); n != want {
+		t.Errorf("%d charts have an alternative text, want %d", n, want)
+	}
+}
+
+// No chart covers a cell with content or another chart.
+func TestChartsCoverNothing(t *testing.T) {
+	for _, g := range layoutOf(t).grids {
+		for i, p := range g.charts {
+			for row := p.row; row < p.row+p.rowsTaken(); row++ {
+				if row <= len(g.rows) && len(g.rows[row-1]) > 0 {
+					t.Errorf("%s: chart %d covers row %d", g.name, i+1, row)
+				}
+			}
+			for _, q := range g.charts[i+1:] {
+				if p.row+p.rowsTaken() >= q.row && p.column+columnsUnder(g, p) > q.column {
+					t.Errorf("%s: charts at rows %d and %d overlap", g.name, p.row, q.row)
+				}
+			}
+		}
+	}
+}
+
+// columnsUnder is the number of columns under a chart, at 7 pixels a unit of width:
+// the narrowest that the typeface gives.
+func columnsUnder(g *grid, p placed) int {
+	left, n := float64(p.chart.Dimension.Width), 0
+	for ; left > 0 && p.column-1+n < len(g.widths); n++ {
+		left -= g.widths[p.column-1+n] * 7
+	}
+	return n
+}
+
+// A chart that is not as expected must not pass silently.
+func TestChartPatchFailsLoudly(t *testing.T) {
+	none := func(string) ([]cell, error) { return []cell{text(plain, "a<b")}, nil }
+	good := `<barDir val="bar"></barDir><ser></tx><spPr><a:solidFill><a:srgbClr val="0072B2"></a:srgbClr></a:solidFill></spPr></ser>` +
+		`<strRef><f>A!$A$1</f></strRef><numRef><f>A!$A$1</f><numCache><formatCode></formatCode></numCache></numRef>` +
+		`<catAx><axPos val="t"></axPos></catAx><valAx><axPos val="l"></axPos><crosses val="autoZero"></crosses><x rot="-5400000" spcFirstLastPara="false" vert="horz"></x></valAx>`
+	out, err := patchChart([]byte(good), none)
+	if err != nil {
+		t.Fatal(err)
+	}
+	for _, s := range []string{`<axPos val="b">`, `<crosses val="max">`, `<v>a&lt;b</v>`, `<a:ln w="9525">`} {
+		if !bytes.Contains(out, []byte(s)) {
+			t.Errorf("no %s in %s", s, out)
+		}
+	}
+	for _, gone := range []string{`<axPos val="t">`, `<crosses val="autoZero">`, `<strRef><f>A!$A$1</f></strRef>`, `<valAx>`, `<a:srgbClr val="0072B2">`, `rot="-5400000"`} {
+		if _, err := patchChart([]byte(strings.Replace(good, gone, "", 1)), none); err == nil {
+			t.Errorf("without %s the patch passes", gone)
+		}
+	}
+	if _, err := anchorBySize([]byte(`<xdr:twoCellAnchor editAs="absolute"></xdr:twoCellAnchor>`)); err == nil {
+		t.Error("an unexpected anchor passes")
+	}
+	if _, err := patchChart([]byte(good), func(string) ([]cell, error) { return nil, io.EOF }); err == nil {
+		t.Error("a reference to nothing passes")
+	}
+}

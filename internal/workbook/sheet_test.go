@@ -1,0 +1,114 @@
+package workbook
+
+import (
+	"errors"
+	"regexp"
+	"strconv"
+	"strings"
+	"testing"
+)
+
+func TestEverySheetPrintsAndProtects(t *testing.T) {
+	b := readBook(t, written(t, demo(t)))
+	for _, sheet := range b.sheets {
+		part := string(b.parts[b.part[sheet]])
+		for _, want := range []string{`orientation="landscape"`, `fitToWidth="1"`, `fitToHeight="0"`, `fitToPage="true"`, `<sheetProtection`, `state="frozen"`, `<tabColor`, `showGridLines="false"`} {
+			if !strings.Contains(part, want) {
+				t.Errorf("%s: no %s", sheet, want)
+			}
+		}
+		if strings.Contains(part, ` password=`) || strings.Contains(part, "hashValue") {
+			t.Errorf("%s is protected by a password", sheet)
+		}
+	}
+	workbook := string(b.parts["xl/workbook.xml"])
+	for name, n := range map[string]int{"_xlnm.Print_Titles": 8, "_xlnm.Print_Area": 8} {
+		if got := strings.Count(workbook, name); got != n {
+			t.Errorf("%s stands %d times, want %d", name, got, n)
+		}
+	}
+	if strings.Contains(workbook, `state="hidden"`) || strings.Contains(workbook, "externalReference") {
+		t.Error("hidden sheets or links to other files")
+	}
+	if !strings.Contains(workbook, "fullCalcOnLoad") {
+		t.Error("the file does not ask to be recalculated")
+	}
+}
+
+// Exactly the inputs are unlocked, and each has a limit with a message.
+func TestInputsAreUnlockedAndLimited(t *testing.T) {
+	for _, g := range layoutOf(t).grids {
+		limited := map[string]bool{}
+		for _, l := range g.limits {
+			if l.prompt == "" || l.refuse == "" || len(l.prompt) > 255 || len(l.refuse) > 225 {
+				t.Errorf("%s!%s: message %q, %q", g.name, l.place, l.prompt, l.refuse)
+			}
+			from, to, ok := strings.Cut(l.place, ":")
+			if !ok {
+				to = from
+			}
+			for _, p := range cellsOf(t, from, to) {
+				limited[p] = true
+			}
+		}
+		inputs := 0
+		for r, row := range g.rows {
+			for c, x := range row {
+				if unlocked := paints[x.look].unlocked; unlocked != limited[at(c+1, r+1)] {
+					t.Errorf("%s!%s: unlocked %v, limited %v", g.name, at(c+1, r+1), unlocked, !unlocked)
+				} else if unlocked {
+					inputs++
+				}
+			}
+		}
+		if (g.name == sheetInputs || g.name == sheetPrices) && inputs < 5 {
+			t.Errorf("%s has %d inputs", g.name, inputs)
+		}
+	}
+}
+
+func cellsOf(t *testing.T, from, to string) (out []string) {
+	t.Helper()
+	m := regexp.MustCompile(`^([A-Z]+)([0-9]+)$`)
+	a, b := m.FindStringSubmatch(from), m.FindStringSubmatch(to)
+	if a == nil || b == nil || a[1] != b[1] {
+		t.Fatalf("range %s:%s", from, to)
+	}
+	first, err1 := strconv.Atoi(a[2])
+	last, err2 := strconv.Atoi(b[2])
+	if err := errors.Join(err1, err2); err != nil {
+		t.Fatal(err)
+	}
+	for r := first; r <= last; r++ {
+		out = append(out, a[1]+strconv.Itoa(r))
+	}
+	return out
+}
+
+// Properties come from the report, not from a clock.
+func TestPropertiesHaveNoClock(t *testing.T) {
+	r := demo(t)
+	b := readBook(t, written(t, r))
+	core := string(b.parts["docProps/core.xml"])
+	for _, want := range []string{"<dc:creator>parch</dc:creator>", r.CatalogDate + "T00:00:00Z"} {
+		if !strings.Contains(core, want) {
+			t.Errorf("no %s in %s", want, core)
+		}
+	}
+	if app := string(b.parts["docProps/app.xml"]); !strings.Contains(app, "<Application>parch</Application>") {
+		t.Errorf("properties: %s", app)
+	}
+}
+
+// Numbers never stand in a merged cell: merges are for running text only.
+func TestMergesHoldText(t *testing.T) {
+	for _, g := range layoutOf(t).grids {
+		for _, m := range g.merged {
+			for c := m.first; c <= m.last; c++ {
+				if x := g.rows[m.row-1][c-1]; x.isNumber() || x.formula != "" {
+					t.Errorf("%s!%s is merged and holds %v", g.name, at(c, m.row), x.value)
+				}
+			}
+		}
+	}
+}
