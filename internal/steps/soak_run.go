@@ -11,8 +11,7 @@ import (
 // SoakFor stands a lot over the sorbent dose that reaches goal (kg/kg) in timeS,
 // or over the largest practical dose where none does.
 func SoakFor(m *thermo.Mixture, feed Lot, goal, timeS float64, sorbent Sorbent, rig SoakRig) (Outcome, error) {
-	b := newBath(m, feed, sorbent, rig)
-	dose, err := b.dose(goal, timeS)
+	b, dose, err := choose(m, feed, goal, timeS, sorbent, rig)
 	if err != nil {
 		return Outcome{}, err
 	}
@@ -21,7 +20,16 @@ func SoakFor(m *thermo.Mixture, feed Lot, goal, timeS float64, sorbent Sorbent, 
 
 // SoakOver stands a lot over a given dose (kg per m3 of solvent) for timeS.
 func SoakOver(m *thermo.Mixture, feed Lot, doseKgPerM3, timeS float64, sorbent Sorbent, rig SoakRig) (Outcome, error) {
-	b := newBath(m, feed, sorbent, rig)
+	b, err := newBath(m, feed, sorbent, rig)
+	if err != nil {
+		return Outcome{}, err
+	}
+	if err := checkDose(doseKgPerM3); err != nil {
+		return Outcome{}, err
+	}
+	if err := checkTime(timeS); err != nil {
+		return Outcome{}, err
+	}
 	return b.run(math.NaN(), timeS, SoakDose{Capacity: math.NaN(), Speed: math.NaN(), Dose: doseKgPerM3, Enough: true})
 }
 
@@ -32,26 +40,23 @@ func (b *bath) run(goal, timeS float64, dose SoakDose) (Outcome, error) {
 	if err != nil {
 		return Outcome{}, err
 	}
-	feed := b.feed.Water()
 	doseKg := dose.Dose * b.volumeM3
-	eq := feed
+	eq := b.feed.Water()
 	if dose.Dose > 0 {
 		if eq, err = b.equilibrium(doseKg); err != nil {
 			return Outcome{}, err
 		}
 	}
-	rate := b.rate(dose.Dose)
-	at := func(t float64) float64 { return eq + (feed-eq)*math.Exp(-rate*t) }
+	at := func(t float64) float64 { return b.course(eq, dose.Dose, t) }
 	out := at(timeS)
 
 	vessels := float64(b.rig.Vessels)
-	heldKg := doseKg * b.sorbent.HoldUpM3PerKg * b.m.Solvent.DensityKgPerM3.At(b.rig.TempK)
-	heldKg = math.Min(heldKg, b.feed.SolventKg)
+	heldKg := math.Min(doseKg*b.sorbent.HoldUpM3PerKg*b.m.Solvent.DensityKgPerM3.At(b.tempK), b.feed.SolventKg)
 	keptKg := b.feed.SolventKg - heldKg
 	ratio := out / (1 - out)
 	o := Outcome{
 		Kind: Soak, Agent: b.sorbent.Key, In: b.feed,
-		Out:           Lot{SolventKg: keptKg, WaterKg: keptKg * ratio, TempK: b.rig.TempK},
+		Out:           Lot{SolventKg: keptKg, WaterKg: keptKg * ratio, TempK: b.tempK},
 		Floor:         floor,
 		HoursTotal:    timeS/secondsPerHour + vessels*b.rig.AttendedS/secondsPerHour,
 		HoursAttended: vessels * b.rig.AttendedS / secondsPerHour,
@@ -62,15 +67,20 @@ func (b *bath) run(goal, timeS float64, dose SoakDose) (Outcome, error) {
 		t := timeS * float64(i) / (soakPoints - 1)
 		o.Course = append(o.Course, Point{Hours: t / secondsPerHour, Water: at(t)})
 	}
-	o.account(b.m.Solvent, b.rig.TempK)
+	o.account(b.m.Solvent, b.tempK)
 	takenKg := b.feed.WaterKg - b.feed.SolventKg*ratio
+	if b.rig.CondensationPerS > 0 {
+		dried := out - b.made(dose.Dose, timeS)
+		o.Balance.WaterMadeKg = b.feed.SolventKg * (ratio - dried/(1-dried))
+		takenKg += o.Balance.WaterMadeKg
+	}
 	o.Balance.WaterRemovedKg = takenKg + heldKg*ratio
 	o.Why, o.WhyText = b.reason(goal, out, floor, timeS, dose)
-	o.Figures = b.figures(dose, eq, takenKg, doseKg, rate)
-	return o, nil
+	o.Figures = b.figures(dose, eq, takenKg, doseKg)
+	return o, b.remark(&o, eq, timeS, dose.Dose, takenKg)
 }
 
-func (b *bath) figures(dose SoakDose, eq, takenKg, doseKg, rate float64) []Figure {
+func (b *bath) figures(dose SoakDose, eq, takenKg, doseKg float64) []Figure {
 	loading := b.sorbent.ResidualKgPerKg
 	if doseKg > 0 {
 		loading += takenKg / doseKg
@@ -81,7 +91,7 @@ func (b *bath) figures(dose SoakDose, eq, takenKg, doseKg, rate float64) []Figur
 		{"dose for speed", "g/L", dose.Speed},
 		{"vessels", "", float64(b.rig.Vessels)},
 		{"liquid height", "m", b.rig.DepthM},
-		{"rate constant K", "1/h", rate * secondsPerHour},
+		{"rate constant K", "1/h", b.rate(dose.Dose) * secondsPerHour},
 		{"equilibrium at this dose", "mg/kg", eq * mgPerKg},
 		{"water taken up", "g", takenKg * 1e3},
 		{"loading before", "g/100 g", b.sorbent.ResidualKgPerKg * 100},
@@ -95,22 +105,19 @@ func (b *bath) reason(goal, out, floor, timeS float64, dose SoakDose) (Stop, str
 	case math.IsNaN(goal):
 		return AtTime, fmt.Sprintf("%s after %.3g h", quantity.FormatWater(out), hours)
 	case dose.Enough:
-		return AtTarget, fmt.Sprintf("%s in %.3g h; %s rules the dose", quantity.FormatWater(goal), hours, ruling(dose))
+		return AtTarget, fmt.Sprintf("%s in %.3g h; %s rules the dose", quantity.FormatWater(goal), hours, dose.Ruling())
 	case goal <= floor:
 		return AtFloor, fmt.Sprintf("floor: a sieve that still holds %.2g g/100 g leaves %s, whatever the dose", b.sorbent.ResidualKgPerKg*100, quantity.FormatWater(floor))
+	case b.rig.CondensationPerS > 0:
+		return AtPractice, fmt.Sprintf("%s makes water on the sorbent: no dose reaches %s in %.3g h", b.m.Solvent.Key, quantity.FormatWater(goal), hours)
 	}
 	eq, err := b.equilibrium(dose.Dose * b.volumeM3)
 	if err != nil || eq >= goal {
 		return AtCapacity, fmt.Sprintf("capacity: %.3g g/L, the largest practical dose, holds too little", dose.Dose)
 	}
-	wait := math.Log((b.feed.Water()-eq)/(goal-eq)) / b.rate(dose.Dose) / secondsPerHour
-	return AtTime, fmt.Sprintf("time: no dose reaches %s in %.3g h in a still vessel; stir, or wait %.0f h", quantity.FormatWater(goal), hours, math.Ceil(wait))
-}
-
-// ruling names the larger of the two sizes of a dose.
-func ruling(d SoakDose) string {
-	if d.Speed > d.Capacity {
-		return "speed"
+	wait := math.Ceil(math.Log((b.feed.Water()-eq)/(goal-eq)) / b.rate(dose.Dose) / secondsPerHour)
+	if b.rig.Stirred {
+		return AtTime, fmt.Sprintf("time: no dose up to %.3g g/L reaches %s in %.3g h stirred; wait %.0f h", dose.Dose, quantity.FormatWater(goal), hours, wait)
 	}
-	return "capacity"
+	return AtTime, fmt.Sprintf("time: no dose reaches %s in %.3g h in a still vessel; stir, or wait %.0f h", quantity.FormatWater(goal), hours, wait)
 }

@@ -9,10 +9,14 @@ type Kind string
 
 // The kinds of step.
 const (
-	Settle Kind = "settle"
-	Trap   Kind = "trap"
-	Soak   Kind = "soak"
-	Buy    Kind = "buy"
+	Settle     Kind = "settle"
+	Trap       Kind = "trap"
+	Soak       Kind = "soak"
+	Column     Kind = "column"
+	Salt       Kind = "salt"
+	Reactive   Kind = "reactive"
+	Regenerate Kind = "regenerate"
+	Buy        Kind = "buy"
 )
 
 // Stop says why a step stops.
@@ -26,6 +30,7 @@ const (
 	AtTime     Stop = "time"
 	AtCapacity Stop = "capacity"
 	AtGrade    Stop = "grade as sold"
+	AtMeasured Stop = "measured residual"
 )
 
 // Lot is an amount of solvent and its water.
@@ -90,12 +95,16 @@ const (
 	AqueousWaste  WasteClass = "aqueous"
 	SolventWaste  WasteClass = "solvent"
 	WetSolidWaste WasteClass = "wet solid"
+	ReactiveWaste WasteClass = "reactive"
 )
 
 // Balance closes what went in against what came out, kg.
 type Balance struct {
 	WaterInKg, WaterOutKg, WaterRemovedKg       float64
 	SolventInKg, SolventOutKg, SolventRemovedKg float64
+	WaterMadeKg                                 float64 // made by the solvent itself, with what went in
+	SolventAddedKg                              float64 // fresh solvent of a rinse, with what went in
+	WaterAddedKg                                float64 // and its water
 	HeatInJ, HeatUsedJ                          float64
 }
 
@@ -115,6 +124,7 @@ type Outcome struct {
 	Floor         float64 // kg/kg; NaN where the step has none
 	Why           Stop
 	WhyText       string // the reason in a sentence
+	RuledBy       string // the assumption on which the result turns; "" where none stands out
 	HoursTotal    float64
 	HoursAttended float64
 	EnergyKWh     float64

@@ -47,6 +47,7 @@ func searchRange(p *Pure) (lo, hi float64) {
 type Mixture struct {
 	Water, Solvent *Pure
 	NRTL           NRTL
+	Limits         []Limit // where the model must not be used
 }
 
 // Vapour is a vapour in equilibrium with a boiling liquid.

@@ -26,8 +26,18 @@ func BinaryNRTL(a12, b12, a21, b21, alpha float64) NRTL {
 
 // LnGamma returns the logarithms of the activity coefficients at mole fractions
 // x (which sum to one) and tK.
-func (m *NRTL) LnGamma(x [MaxComponents]float64, tK float64) (lnGamma [MaxComponents]float64) {
-	var tau, g [MaxComponents][MaxComponents]float64
+func (m *NRTL) LnGamma(x Fractions, tK float64) Fractions {
+	tau, g := m.factors(tK)
+	return lnGamma(m.N, &tau, &g, &x)
+}
+
+// Fractions are mole (or, where said, mass) fractions of water, solvent and carrier.
+type Fractions = [MaxComponents]float64
+
+type square = [MaxComponents][MaxComponents]float64
+
+// factors are tau and G at one temperature.
+func (m *NRTL) factors(tK float64) (tau, g square) {
 	for i := range m.N {
 		for j := range m.N {
 			g[i][j] = 1
@@ -37,20 +47,24 @@ func (m *NRTL) LnGamma(x [MaxComponents]float64, tK float64) (lnGamma [MaxCompon
 			}
 		}
 	}
-	var s, c [MaxComponents]float64 // s_j = sum_k x_k G_kj, c_j = sum_k x_k tau_kj G_kj
-	for j := range m.N {
-		for k := range m.N {
+	return tau, g
+}
+
+func lnGamma(n int, tau, g *square, x *Fractions) (ln Fractions) {
+	var s, c Fractions // s_j = sum_k x_k G_kj, c_j = sum_k x_k tau_kj G_kj
+	for j := range n {
+		for k := range n {
 			s[j] += x[k] * g[k][j]
 			c[j] += x[k] * tau[k][j] * g[k][j]
 		}
 	}
-	for i := range m.N {
-		lnGamma[i] = c[i] / s[i]
-		for j := range m.N {
-			lnGamma[i] += x[j] * g[i][j] / s[j] * (tau[i][j] - c[j]/s[j])
+	for i := range n {
+		ln[i] = c[i] / s[i]
+		for j := range n {
+			ln[i] += x[j] * g[i][j] / s[j] * (tau[i][j] - c[j]/s[j])
 		}
 	}
-	return lnGamma
+	return ln
 }
 
 // Pair returns ln gamma of water and of the solvent in a binary mixture with

@@ -140,6 +140,9 @@ func (m *Mixture) LayersAt(tK float64) (Layers, error) {
 	if tK <= m.Solvent.MeltingK {
 		return Layers{Return: None, Reason: fmt.Sprintf("%s freezes at %.1f °C, above the receiver's %.1f °C", m.Solvent.Key, m.Solvent.MeltingK-273.15, tK-273.15)}, nil
 	}
+	if err := m.CheckTemperature(tK); err != nil {
+		return Layers{Return: None, Reason: err.Error()}, nil
+	}
 	s, err := m.SplitAt(tK)
 	if err != nil {
 		return Layers{}, err

@@ -106,9 +106,9 @@ func (l *layout) alwaysTests() []test {
 
 func (l *layout) inputTests() []test {
 	values, runs := on(sheetInputs, l.inputRows.column(colValue)), on(sheetInputs, l.inputRows.column(colRun))
-	states := on(sheetInputs, l.inputRows.column(colState))
+	after := on(sheetInputs, l.inputRows.column(colAfter))
 	tests := []test{
-		{"Edited inputs that only the program can follow", whole(fmt.Sprintf(`COUNTIF(%s,"%s")`, states, runAgain), 0), none(), 0, "cells"},
+		{"Edited inputs that only the program can follow", whole(fmt.Sprintf(`SUMPRODUCT((%s<>%s)*(%s="%s"))`, values, runs, after, runAgain), 0), none(), 0, "cells"},
 		{"Inputs that should be numbers and are not", derived(fmt.Sprintf("SUMPRODUCT(ISNUMBER(%s)*NOT(ISNUMBER(%s)))", runs, values), 0.0).shown("0"), none(), 0, "cells"},
 	}
 	if l.priceRows.empty() {

@@ -54,7 +54,7 @@ var headNames = map[steps.Head]string{
 
 func (l *layout) costs() *grid {
 	g := newGrid(sheetCosts, "The bill of each route: quantity × price = amount, for one batch. Below the lines: cost by head, cost per litre, target and rank. Nothing is rounded, only shown to the cent.",
-		tabWork, checkCell(), 26, 30, 9, 13, 10, 17, 11, 11, 11, 11, 11, 11, 11, 11, 52)
+		tabWork, checkCell(), 26, 30, 10, 13, 12, 17, 11, 11, 11, 11, 11, 11, 11, 11, 52)
 	g.mixed, g.frozenRows, g.frozenColumns = true, frameRows, 3 // the blocks share only these columns
 	l.billBlock(g)
 	l.headBlock(g)

@@ -132,11 +132,11 @@ func (g *grid) putRow(row int, cells ...cell) {
 }
 
 // across writes running text over several columns.
-func (g *grid) across(first, last, row int, s string) {
+func (g *grid) across(first, last, row int, l look, s string) {
 	for column := first; column <= last; column++ {
-		g.put(column, row, blank(words))
+		g.put(column, row, blank(l))
 	}
-	g.put(first, row, text(words, oneLine(s)))
+	g.put(first, row, text(l, oneLine(s)))
 	g.merged = append(g.merged, merge{row, first, last})
 }
 

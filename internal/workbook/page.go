@@ -22,6 +22,10 @@ func (e *emitter) view(g *grid) error {
 	if err := e.file.SetSheetProps(g.name, &excelize.SheetPropsOptions{FitToPage: &fit, TabColorRGB: &colour}); err != nil {
 		return err
 	}
+	used := at(1, 1) + ":" + at(len(g.widths), g.last())
+	if err := e.file.SetSheetDimension(g.name, used); err != nil {
+		return err
+	}
 	return e.file.SetSheetView(g.name, 0, &excelize.ViewOptions{ShowGridLines: &gridLines})
 }
 

@@ -31,53 +31,70 @@ var useWords = []string{
 	"The sheets are protected against slips, without a password.",
 }
 
+// lookWords explains the appearance of cells.
+var lookWords = []struct {
+	look       look
+	name, says string
+}{
+	{input, "input", "may be edited"},
+	{formula, "formula", "computed by the sheet"},
+	{program, "value from the program", "changes only by a new run"},
+	{pass, "holds", "a check holds, a target is reached, a first rank"},
+	{warn, "mind", "edited, indicative or weak"},
+	{fail, "fails", "a check fails, a target is missed"},
+}
+
 func (l *layout) readMe() *grid {
-	r, j := l.report, l.report.Job
-	g := newGrid(sheetReadMe, "Ways to dry a bulk solvent, compared: "+oneLine(j.Title), tabText, checkCell(), 26, 120)
+	g := newGrid(sheetReadMe, "Ways to dry a bulk solvent, compared: "+oneLine(l.report.Job.Title), tabText, checkCell(), 26, 120)
 	g.put(1, 3, text(plain, "Checks"))
 	g.mixed, g.frozenRows = true, frameRows
-	section := func(name string) { g.put(1, g.next(), text(block, name)) }
-	line := func(a cell, b string) { g.putRow(g.last()+1, a, text(words, b)) }
-	section("This run")
-	line(text(plain, "Program"), "parch "+r.Version)
-	line(text(plain, "Job file"), j.File)
-	line(text(plain, "Catalog of"), r.CatalogDate)
-	line(text(plain, "Seed, draws"), fmt.Sprintf("%d, %d", r.Seed, r.Draws))
-	line(text(plain, "Currency"), j.Currency)
-	line(text(plain, "Ranked by"), j.Objective)
-	if j.Invented {
-		line(text(warn, "Demonstration"), "The site, the lots and the prices of this job are invented. They are no market prices.")
+	l.thisRun(g)
+	g.section("How to use it")
+	g.numbered(useWords)
+	g.section("Sheets")
+	for _, s := range sheetPurposes {
+		g.say(text(link, s[0]).linkTo(on(s[0], "A1")), s[1])
 	}
-	for i, lot := range l.lots {
-		state := strconv.Itoa(len(lot.routes)) + " routes compared, " + strconv.Itoa(len(lot.Excluded)) + " not offered"
+	g.section("Meaning of the cells")
+	for _, w := range lookWords {
+		g.say(text(w.look, w.name), w.says)
+	}
+	g.section("Cautions")
+	g.numbered(cautionWords)
+	return g
+}
+
+func (g *grid) section(name string) { g.put(1, g.next(), text(block, name)) }
+
+func (g *grid) say(a cell, b string) { g.putRow(g.last()+1, a, text(words, oneLine(b))) }
+
+func (g *grid) numbered(list []string) {
+	for i, s := range list {
+		g.say(text(plain, strconv.Itoa(i+1)), s)
+	}
+}
+
+func (l *layout) thisRun(g *grid) {
+	r, j := l.report, l.report.Job
+	g.section("This run")
+	g.say(text(plain, "Program"), "parch "+r.Version)
+	g.say(text(plain, "Job file"), j.File)
+	g.say(text(plain, "Catalog of"), r.CatalogDate)
+	draws := "none: figures are single values; sheet Sources says which of them are weak"
+	if r.Draws > 0 {
+		draws = fmt.Sprintf("%d, seed %d", r.Draws, r.Seed)
+	}
+	g.say(text(plain, "Draws"), draws)
+	g.say(text(plain, "Currency"), j.Currency)
+	g.say(text(plain, "Ranked by"), j.Objective)
+	if j.Invented {
+		g.say(text(warn, "Demonstration"), "The site, the lots and the prices of this job are invented. They are no market prices.")
+	}
+	for _, lot := range l.lots {
+		state := fmt.Sprintf("routes compared: %d, not offered: %d", len(lot.routes), len(lot.Excluded))
 		if lot.NothingToDo != "" {
 			state = "nothing to do: " + lot.NothingToDo
 		}
-		line(text(plain, fmt.Sprintf("Lot %d", i+1)), oneLine(lot.Job.Name)+": "+lot.solventName()+", "+state)
+		g.say(text(plain, fmt.Sprintf("Lot %d", lot.no)), lot.Job.Name+": "+lot.solventName()+"; "+state)
 	}
-	section("How to use it")
-	for i, s := range useWords {
-		line(text(plain, strconv.Itoa(i+1)), s)
-	}
-	section("Sheets")
-	for _, s := range sheetPurposes {
-		line(text(link, s[0]).linkTo(on(s[0], "A1")), s[1])
-	}
-	section("Meaning of the cells")
-	for _, s := range []struct {
-		look look
-		name string
-		says string
-	}{
-		{input, "input", "may be edited"}, {formula, "formula", "computed by the sheet"},
-		{program, "value from the program", "changes only by a new run"},
-		{pass, "holds", "a check holds, a target is reached, a first rank"}, {warn, "mind", "edited, indicative or weak"}, {fail, "fails", "a check fails, a target is missed"},
-	} {
-		line(text(s.look, s.name), s.says)
-	}
-	section("Cautions")
-	for i, s := range cautionWords {
-		line(text(plain, strconv.Itoa(i+1)), s)
-	}
-	return g
 }

@@ -51,22 +51,25 @@ func (l *layout) whom(r *remark) string {
 	return strings.Join(parts, "; ")
 }
 
-// listBlock starts a block of text whose last column runs over the columns to its
-// right, and returns the first row of entries.
+// Columns of the lists of text: a word, routes, running text.
+const (
+	listRoutes = 2
+	listText   = 7
+)
+
+// listBlock starts a list of text and returns the row of its first entry.
 func (l *layout) listBlock(g *grid, name, a, b, c string) int {
 	row := max(g.last(), g.drawnTo()) + 2
 	g.put(1, row, text(block, name))
-	g.putRow(row+1, text(heading, a), text(heading, b), text(heading, c))
-	for column := 4; column <= len(g.widths); column++ {
-		g.put(column, row+1, blank(heading))
-	}
-	g.merged = append(g.merged, merge{row + 1, 3, len(g.widths)})
+	g.entry(row+1, heading, a, b, c)
 	return row + 2
 }
 
-func (g *grid) entry(row int, a, b, c string) {
-	g.putRow(row, text(words, oneLine(a)), text(words, oneLine(b)))
-	g.across(3, len(g.widths), row, c)
+// entry writes a row of a list: its texts run over as many columns as they need.
+func (g *grid) entry(row int, l look, a, b, c string) {
+	g.put(1, row, text(l, oneLine(a)))
+	g.across(listRoutes, listText-1, row, l, b)
+	g.across(listText, len(g.widths), row, l, c)
 }
 
 func (l *layout) excludedBlock(g *grid) {
@@ -80,7 +83,7 @@ func (l *layout) excludedBlock(g *grid) {
 			if row == 0 {
 				row = l.listBlock(g, "Not offered, and why", "Lot", "Routes", "Reason and source")
 			}
-			g.entry(row, lot.Job.Name, strings.Join(r.routes[lot.no], ", "), r.text)
+			g.entry(row, words, lot.Job.Name, strings.Join(r.routes[lot.no], ", "), r.text)
 			row++
 		}
 	}
@@ -109,7 +112,7 @@ func (l *layout) cautionBlock(g *grid) {
 	slices.SortStableFunc(rs.all, func(a, b *remark) int { return slices.Index(levels, a.level) - slices.Index(levels, b.level) })
 	row := l.listBlock(g, "Cautions: site rules, safety data sheets, local codes and licensed practice decide", "Level", "Lots and routes", "Caution and source")
 	for _, r := range rs.all {
-		g.entry(row, r.level, l.whom(r), r.text)
+		g.entry(row, words, r.level, l.whom(r), r.text)
 		row++
 	}
 }
@@ -132,11 +135,11 @@ func (l *layout) noteBlock(g *grid) {
 	}
 	row := l.listBlock(g, "Notes", "About", "Lots and routes", "Note")
 	for _, s := range l.report.Warnings {
-		g.entry(row, "job", l.report.Job.File, s)
+		g.entry(row, words, "job", l.report.Job.File, s)
 		row++
 	}
 	for _, r := range rs.all {
-		g.entry(row, r.level, l.whom(r), r.text)
+		g.entry(row, words, r.level, l.whom(r), r.text)
 		row++
 	}
 }

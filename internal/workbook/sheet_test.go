@@ -3,6 +3,7 @@ package workbook
 import (
 	"errors"
 	"regexp"
+	"slices"
 	"strconv"
 	"strings"
 	"testing"
@@ -109,6 +110,30 @@ func TestMergesHoldText(t *testing.T) {
 					t.Errorf("%s!%s is merged and holds %v", g.name, at(c, m.row), x.value)
 				}
 			}
+		}
+	}
+}
+
+// sheetOrder is the order of the parts of a worksheet that the schema of the file
+// format prescribes (ISO/IEC 29500-1, CT_Worksheet; from memory), as far as used.
+var sheetOrder = []string{"sheetPr", "dimension", "sheetViews", "sheetFormatPr", "cols", "sheetData", "sheetProtection", "mergeCells",
+	"conditionalFormatting", "dataValidations", "hyperlinks", "pageMargins", "pageSetup", "headerFooter", "rowBreaks", "colBreaks", "drawing"}
+
+func TestSheetsFollowTheSchema(t *testing.T) {
+	b := readBook(t, written(t, demo(t)))
+	for _, sheet := range b.sheets {
+		var e element
+		b.decode(t, b.part[sheet], &e)
+		last := 0
+		for _, c := range e.Children {
+			i := slices.Index(sheetOrder, c.XMLName.Local)
+			if i < last {
+				t.Errorf("%s: %s does not belong where it stands", sheet, c.XMLName.Local)
+			}
+			last = max(last, i)
+		}
+		if part := string(b.parts[b.part[sheet]]); !regexp.MustCompile(`<dimension ref="A1:[A-Z]+\d+">`).MatchString(part) {
+			t.Errorf("%s does not say how large it is", sheet)
 		}
 	}
 }

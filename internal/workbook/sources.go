@@ -15,7 +15,7 @@ func (l *layout) sources() *grid {
 	row := g.table(g.next(), "References", []column{{name: "Source id"}, {name: "Reference"}, {}, {}, {}})
 	for _, s := range l.report.Sources {
 		g.putRow(row, text(words, s.ID))
-		g.across(2, len(g.widths), row, s.Reference)
+		g.across(2, len(g.widths), row, words, s.Reference)
 		row++
 	}
 	if len(l.report.Sources) == 0 {

@@ -2,6 +2,7 @@ package workbook
 
 import (
 	"fmt"
+	"math"
 	"strings"
 
 	"parch/internal/steps"
@@ -31,7 +32,7 @@ func (l *layout) allSteps() (out []stepModel) {
 
 func (l *layout) steps() *grid {
 	g := newGrid(sheetSteps, "What each step does, computed by the program. These values change only by a new run; the column State says when one is needed.",
-		tabWork, checkCell(), 26, 30, 8, 9, 10, 14, 10, 10, 10, 10, 10, 10, 12, 10, 10, 10, 44, 18)
+		tabWork, checkCell(), 26, 30, 10, 9, 10, 14, 10, 10, 10, 10, 10, 10, 12, 10, 10, 10, 44, 18)
 	g.mixed, g.frozenRows, g.frozenColumns = true, frameRows, 3 // the blocks share only these columns
 	all := l.allSteps()
 	l.stepBlock(g, all)
@@ -185,6 +186,9 @@ func (l *layout) figureBlock(g *grid, all []stepModel) {
 			g.putRow(row, append(l.stepKey(s), text(plain, f.Name))...)
 			g.put(9, row, finite(f.Value, unit, formatFor(tidy(f.Value))))
 			g.put(10, row, text(plain, unit))
+			if math.IsNaN(f.Value) || math.IsInf(f.Value, 0) {
+				g.put(11, row, text(plain, "there is none"))
+			}
 			row++
 		}
 	}

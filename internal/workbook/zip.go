@@ -81,6 +81,8 @@ func (w *file) patchPart(name string, part []byte) ([]byte, error) {
 		return patchChart(part, w.valuesAt)
 	case strings.HasPrefix(name, "xl/drawings/drawing"):
 		return anchorBySize(part)
+	case strings.HasPrefix(name, "xl/worksheets/sheet"):
+		return bytes.ReplaceAll(part, []byte("<colBreaks></colBreaks>"), nil), nil // an empty list
 	}
 	return part, nil
 }

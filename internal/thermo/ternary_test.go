@@ -1,0 +1,279 @@
+package thermo_test
+
+import (
+	"encoding/csv"
+	"math"
+	"os"
+	"path/filepath"
+	"strconv"
+	"testing"
+
+	"pgregory.net/rapid"
+
+	"parch/internal/thermo"
+)
+
+// row is one line of a table in testdata, by column name.
+type row map[string]string
+
+func (r row) number(t testing.TB, column string) float64 {
+	t.Helper()
+	v, err := strconv.ParseFloat(r[column], 64)
+	if err != nil {
+		t.Fatalf("%v: %s: %v", r, column, err)
+	}
+	return v
+}
+
+func table(t testing.TB, name string) (rows []row) {
+	t.Helper()
+	f, err := os.Open(filepath.Join("testdata", name))
+	if err != nil {
+		t.Fatal(err)
+	}
+	defer f.Close()
+	reader := csv.NewReader(f)
+	reader.Comment = '#'
+	lines, err := reader.ReadAll()
+	if err != nil {
+		t.Fatal(err)
+	}
+	for _, line := range lines[1:] {
+		r := row{}
+		for i, column := range lines[0] {
+			r[column] = line[i]
+		}
+		rows = append(rows, r)
+	}
+	return rows
+}
+
+func pair(t testing.TB, r row, prefix string) thermo.NRTL {
+	return thermo.BinaryNRTL(r.number(t, prefix+"a12"), r.number(t, prefix+"b12_k"), r.number(t, prefix+"a21"), r.number(t, prefix+"b21_k"), r.number(t, prefix+"alpha"))
+}
+
+// pures are components with a molar mass and a vapour pressure only.
+func pures(t testing.TB) map[string]*thermo.Pure {
+	all := map[string]*thermo.Pure{}
+	for _, r := range table(t, "vapour_pressures.csv") {
+		p := &thermo.Pure{Key: r["key"], MolarMassKgPerMol: r.number(t, "molar_mass_g_mol") / 1e3}
+		p.VapourPressurePa = thermo.Correlation{Equation: thermo.DIPPR101, Scale: 1}
+		for i, c := range []string{"c1", "c2", "c3", "c4", "c5"} {
+			p.VapourPressurePa.C[i] = r.number(t, c)
+		}
+		p.CriticalK = r.number(t, "tmax_k")
+		all[p.Key] = p
+	}
+	return all
+}
+
+func waterPairs(t testing.TB) map[string]thermo.NRTL {
+	all := map[string]thermo.NRTL{}
+	for _, r := range table(t, "water_pairs.csv") {
+		all[r["solvent"]] = pair(t, r, "")
+	}
+	return all
+}
+
+// fromPairs are the mixtures of carrier_pairs.csv, from binary sets alone.
+func fromPairs(t testing.TB) map[[2]string]*thermo.Ternary {
+	p, water := pures(t), waterPairs(t)
+	all := map[[2]string]*thermo.Ternary{}
+	for _, r := range table(t, "carrier_pairs.csv") {
+		s, c := r["solvent"], r["carrier"]
+		all[[2]string{s, c}] = &thermo.Ternary{
+			Pure: [3]*thermo.Pure{p["water"], p[s], p[c]},
+			NRTL: thermo.JoinPairs(water[s], water[c], pair(t, r, "")),
+		}
+	}
+	return all
+}
+
+// fittedTogether are the mixtures of ternary_terms.csv.
+func fittedTogether(t testing.TB) map[[2]string]*thermo.Ternary {
+	p := pures(t)
+	all := map[[2]string]*thermo.Ternary{}
+	for _, r := range table(t, "ternary_terms.csv") {
+		a, c := r["alcohol"], r["carrier"]
+		all[[2]string{a, c}] = &thermo.Ternary{
+			Pure:  [3]*thermo.Pure{p["water"], p[a], p[c]},
+			NRTL:  thermo.JoinPairs(pair(t, r, "wa_"), pair(t, r, "wc_"), pair(t, r, "ac_")),
+			Extra: thermo.TernaryTerm{L0: r.number(t, "l0"), L1: r.number(t, "l1"), L2: r.number(t, "l2"), L3: r.number(t, "l3")},
+		}
+	}
+	return all
+}
+
+// Vectors computed beforehand from the same parameters by another program.
+func TestTernaryActivityCoefficients(t *testing.T) {
+	mixtures := fittedTogether(t)
+	vectors := table(t, "ternary_vectors.csv")
+	if len(vectors) != 57 {
+		t.Fatalf("%d vectors", len(vectors))
+	}
+	for _, r := range vectors {
+		x := thermo.Fractions{r.number(t, "x_water"), r.number(t, "x_alcohol"), r.number(t, "x_carrier")}
+		got := mixtures[[2]string{r["alcohol"], r["carrier"]}].LnGamma(x, r.number(t, "T_K"))
+		for i, column := range []string{"ln_gamma_water", "ln_gamma_alcohol", "ln_gamma_carrier"} {
+			if want := r.number(t, column); math.Abs(got[i]-want) > 1e-5 {
+				t.Errorf("%s, %s: %s = %.6f, want %.6f", r["alcohol"], r["carrier"], column, got[i], want)
+			}
+		}
+	}
+}
+
+// Gibbs and Duhem: sum x_i dln gamma_i = 0 along any direction. Needs no data.
+func TestTernaryTermIsConsistent(t *testing.T) {
+	mixtures := fittedTogether(t)
+	rapid.Check(t, func(rt *rapid.T) {
+		m := mixtures[[2]string{"ethanol", "benzene"}]
+		x := drawFractions(rt, 0.05)
+		tK := rapid.Float64Range(280, 360).Draw(rt, "T")
+		from, to := rapid.IntRange(0, 2).Draw(rt, "from"), rapid.IntRange(0, 2).Draw(rt, "to")
+		const h = 1e-5
+		up, down := x, x
+		up[from], up[to] = up[from]-h, up[to]+h
+		down[from], down[to] = down[from]+h, down[to]-h
+		a, b := m.LnGamma(up, tK), m.LnGamma(down, tK)
+		var sum float64
+		for i := range x {
+			sum += x[i] * (a[i] - b[i]) / (2 * h)
+		}
+		if math.Abs(sum) > 1e-6 {
+			rt.Fatalf("x = %v: sum x dln gamma = %g", x, sum)
+		}
+	})
+}
+
+func drawFractions(t *rapid.T, least float64) (x thermo.Fractions) {
+	var sum float64
+	for i := range x {
+		x[i] = math.Exp(rapid.Float64Range(math.Log(least), 0).Draw(t, "x"))
+		sum += x[i]
+	}
+	for i := range x {
+		x[i] /= sum
+	}
+	return x
+}
+
+// Every split closes its balance and has equal activities in both layers.
+func TestFlashConditions(t *testing.T) {
+	mixtures := fromPairs(t)
+	for k, m := range fittedTogether(t) {
+		mixtures[[2]string{k[0], k[1] + " with term"}] = m
+	}
+	var keys [][2]string
+	for k := range mixtures {
+		keys = append(keys, k)
+	}
+	splits := 0
+	rapid.Check(t, func(rt *rapid.T) {
+		m := mixtures[rapid.SampledFrom(keys).Draw(rt, "mixture")]
+		z := drawFractions(rt, 1e-6)
+		tK := rapid.Float64Range(275, 350).Draw(rt, "T")
+		s, err := m.Flash(z, tK)
+		if err != nil {
+			rt.Fatal(err)
+		}
+		if !s.Exists {
+			return
+		}
+		splits++
+		a, b := m.LnGamma(s.Organic, tK), m.LnGamma(s.Aqueous, tK)
+		for i := range z {
+			if back := (1-s.AqueousShare)*s.Organic[i] + s.AqueousShare*s.Aqueous[i]; math.Abs(back-z[i]) > 1e-9 {
+				rt.Fatalf("component %d: %g of %g", i, back, z[i])
+			}
+			if d := math.Log(s.Organic[i]/s.Aqueous[i]) + a[i] - b[i]; math.Abs(d) > 1e-8 {
+				rt.Fatalf("component %d: ln activities differ by %g", i, d)
+			}
+		}
+		if !(s.Organic[0] < s.Aqueous[0] && s.AqueousShare > 0 && s.AqueousShare < 1) {
+			rt.Fatalf("%+v", s)
+		}
+	})
+	if splits == 0 {
+		t.Error("no liquid split")
+	}
+}
+
+// Where no third component is present the flash finds the layers of the pair.
+func TestFlashAgainstPair(t *testing.T) {
+	m := fromPairs(t)[[2]string{"ethanol", "cyclohexane"}]
+	two := &thermo.Mixture{Water: m.Pure[0], Solvent: m.Pure[2], NRTL: waterPairs(t)["cyclohexane"]}
+	for _, tK := range []float64{280, 298.15, 340} {
+		want, err := two.SplitAt(tK)
+		if err != nil {
+			t.Fatal(err)
+		}
+		got, err := m.Flash(thermo.Fractions{0.4, 0, 0.6}, tK)
+		if err != nil || !got.Exists {
+			t.Fatal(got, err)
+		}
+		if math.Abs(got.Organic[0]/want.XOrganic-1) > 1e-8 || math.Abs(got.Aqueous[0]-want.XAqueous) > 1e-10 {
+			t.Errorf("%g K: %v and %v, want %+v", tK, got.Organic, got.Aqueous, want)
+		}
+	}
+}
+
+// The flash decides as a search of the whole triangle for the lowest Gibbs
+// energy does: another method, same model.
+func TestStabilityAgainstGridSearch(t *testing.T) {
+	mixtures := fromPairs(t)
+	const n = 60
+	for k, m := range mixtures {
+		for _, z := range []thermo.Fractions{{0.1, 0.3, 0.6}, {0.3, 0.4, 0.3}, {0.05, 0.15, 0.8}, {0.5, 0.45, 0.05}, {0.02, 0.6, 0.38}, {0.8, 0.15, 0.05}} {
+			const tK = 298.15
+			s, err := m.Flash(z, tK)
+			if err != nil {
+				t.Fatal(err)
+			}
+			plane := m.LnGamma(z, tK)
+			lowest := 0.0
+			for i := 1; i < n; i++ {
+				for j := 1; i+j < n; j++ {
+					y := thermo.Fractions{float64(i) / n, float64(j) / n, float64(n-i-j) / n}
+					ln := m.LnGamma(y, tK)
+					var distance float64
+					for c := range y {
+						distance += y[c] * (math.Log(y[c]) + ln[c] - math.Log(z[c]) - plane[c])
+					}
+					lowest = math.Min(lowest, distance)
+				}
+			}
+			if lowest < -1e-4 && !s.Exists {
+				t.Errorf("%v, z = %v: one liquid, yet a liquid %g below its tangent plane exists", k, z, lowest)
+			}
+		}
+	}
+}
+
+// Ternary azeotropes whose pairs are all in the model: 1.2 K, 6 wt% for 8 of 9.
+func TestTernaryAzeotropes(t *testing.T) {
+	const withinK, withinPercent = 1.2, 6.0
+	mixtures := fromPairs(t)
+	good := 0
+	rows := table(t, "ternary_azeotropes.csv")
+	for _, r := range rows {
+		m := mixtures[[2]string{r["solvent"], r["carrier"]}]
+		a, err := m.FindAzeotrope(atmospherePa)
+		if err != nil {
+			t.Errorf("%s, %s: %v", r["solvent"], r["carrier"], err)
+			continue
+		}
+		w := m.Mass(a.Y)
+		dT := a.TempK - 273.15 - r.number(t, "t_c")
+		worst := 0.0
+		for i, column := range []string{"wt_pct_water", "wt_pct_solvent", "wt_pct_carrier"} {
+			worst = math.Max(worst, math.Abs(100*w[i]-r.number(t, column)))
+		}
+		t.Logf("%s, %s: %s %.2f °C (%+.2f K), %.1f/%.1f/%.1f wt%%, worst %.1f", r["solvent"], r["carrier"], a.Kind, a.TempK-273.15, dT, 100*w[0], 100*w[1], 100*w[2], worst)
+		if math.Abs(dT) <= withinK && worst <= withinPercent {
+			good++
+		}
+	}
+	if len(rows) != 9 || good < 8 {
+		t.Errorf("%d of %d within %g K and %g wt%%", good, len(rows), withinK, withinPercent)
+	}
+}
