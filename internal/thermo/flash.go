@@ -84,10 +84,12 @@ func lnRatio(a, b *Fractions) (ln Fractions) {
 }
 
 // Iterations of the flash: successive substitution alone at first, then Newton
-// steps, each replaced by a substitution where it does not help.
+// steps, each replaced by a substitution where it does not lower both the
+// residual and the Gibbs energy. Substitution lowers the energy by itself, but
+// slowly where the energy is flat.
 const (
-	flashSubstitutions = 12
-	flashIterations    = 120
+	flashSubstitutions = 8
+	flashIterations    = 600
 	flashTolerance     = 1e-10
 )
 
@@ -207,7 +209,15 @@ func (l *liquid) newton(z *Fractions, p *partition) (next partition, better bool
 		}
 	}
 	next, ok = l.layersOf(z, minus(&p.lnK, &step))
-	return next, ok && next.size < 0.9*p.size
+	if !ok || !(next.size < 0.9*p.size) || !(next.share > 0 && next.share < 1) {
+		return next, false
+	}
+	return next, p.size < 1e-4 || l.together(&next) < l.together(p)
+}
+
+// together is the Gibbs energy of mixing of both layers over RT, per mole of feed.
+func (l *liquid) together(p *partition) float64 {
+	return (1-p.share)*l.gibbs(&p.first) + p.share*l.gibbs(&p.second)
 }
 
 // accept turns a converged partition into layers, or into one liquid where the
@@ -227,7 +237,7 @@ func (l *liquid) accept(z *Fractions, p *partition) TernarySplit {
 	if difference < leastLayerDifference || imbalance > 1e-9 {
 		return TernarySplit{}
 	}
-	if l.gibbs(z) < (1-p.share)*l.gibbs(&p.first)+p.share*l.gibbs(&p.second) {
+	if l.gibbs(z) < l.together(p) {
 		return TernarySplit{}
 	}
 	if p.first[InWater] > p.second[InWater] {
