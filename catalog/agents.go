@@ -5,26 +5,33 @@ import (
 	"parch/internal/quantity"
 )
 
+var agentKinds = []string{"sieve", "salt", "reactive", "oxide"}
+
 func (s *shelf) readAgents() {
 	s.cat.Agents = map[string]*Agent{}
-	entries := s.root(agentsFile).Entries()
 	scaled := map[*Agent]document.Fields{}
-	for _, e := range entries {
-		s.cat.Agents[e.Key] = s.agent(e.Key, e.Node, scaled)
-	}
+	s.each(agentsFile, func(n *document.Node) {
+		for _, e := range n.Entries() {
+			s.checkKey(e)
+			s.cat.Agents[e.Key] = s.agent(e.Key, e.Node, scaled)
+		}
+	})
 	// A scaled isotherm may stand before the one it is scaled from.
-	for _, e := range entries {
-		if f, ok := scaled[s.cat.Agents[e.Key]]; ok {
-			s.scale(s.cat.Agents[e.Key], f)
+	for _, key := range keysOf(s.cat.Agents) {
+		if f, ok := scaled[s.cat.Agents[key]]; ok {
+			s.scale(s.cat.Agents[key], f)
 		}
 	}
 }
 
 func (s *shelf) agent(key string, n *document.Node, scaled map[*Agent]document.Fields) *Agent {
-	f := n.Map("name", "kind", "isotherm", "loading band", "bulk density", "bead diameter", "bead density",
-		"bead porosity", "bead tortuosity", "hold-up", "lives", "fade", "largest dose")
+	f := n.Map("name", "kind", "formula", "isotherm", "loading band", "hydrates", "claim", "reaction", "residuals", "pore space", "window", "useless above",
+		"bulk density", "bead diameter", "bead density", "bead porosity", "bead tortuosity", "hold-up", "lives", "fade", "largest dose",
+		"heat of uptake", "heat capacity")
 	a := &Agent{
-		Key: key, Name: f.Need("name").Text(), Kind: f.Need("kind").OneOf("sieve", "oxide", "salt", "reactive"),
+		Key: key, Name: f.Need("name").Text(), Kind: f.Need("kind").OneOf(agentKinds...), Formula: f.Get("formula").Text(), Own: s.owning,
+		UselessAbove:   s.optional(f.Get("useless above"), quantity.Temperature),
+		Window:         s.optional(f.Get("window"), quantity.Length),
 		BulkDensity:    s.optional(f.Get("bulk density"), quantity.Density),
 		BeadDiameter:   s.optional(f.Get("bead diameter"), quantity.Length),
 		BeadDensity:    s.optional(f.Get("bead density"), quantity.Density),
@@ -34,84 +41,111 @@ func (s *shelf) agent(key string, n *document.Node, scaled map[*Agent]document.F
 		Lives:          s.optional(f.Get("lives"), quantity.Number),
 		Fade:           s.optional(f.Get("fade"), quantity.Share),
 		MaxDose:        s.optional(f.Get("largest dose"), quantity.MassConcentration),
+		HeatOfUptake:   s.optional(f.Get("heat of uptake"), quantity.HeatPerMole),
+		HeatCapacity:   s.optional(f.Get("heat capacity"), quantity.HeatCapacity),
+		PoreSpace:      s.bySolvent(f.Get("pore space"), quantity.Share),
 		LoadingBand:    1,
 	}
 	if band := s.optional(f.Get("loading band"), quantity.Number); band != nil {
-		if a.LoadingBand = band.SI; a.LoadingBand < 1 {
-			f.Get("loading band").Fail("the factor %v is below 1", a.LoadingBand)
+		a.BandOrigin = band.Origin
+		if a.LoadingBand = band.SI; a.LoadingBand < 1 || a.LoadingBand > 10 {
+			f.Get("loading band").Fail("the factor %v is outside 1 to 10", a.LoadingBand)
 		}
 	}
-	if isotherm := f.Get("isotherm"); isotherm != nil {
-		i := isotherm.Map(with("sites", "like", "capacity factor", "affinity factor")...)
-		a.Isotherm = &Isotherm{Origin: s.origin(i)}
-		if i.Has("like") {
-			scaled[a] = i
-		} else {
-			a.Isotherm.Sites = sites(i.Need("sites"))
-		}
-	}
+	s.readIsotherm(a, f.Get("isotherm"), scaled)
+	s.readChemistry(a, f)
+	s.checkAgent(n, f, a)
 	return a
 }
 
-func sites(n *document.Node) (list []Site) {
-	for _, item := range n.Items() {
-		f := item.Map("capacity", "b0", "heat")
-		read := func(key string, d quantity.Dimension) float64 {
-			number := f.Need(key)
-			reading, ok := number.Quantity(d)
-			if ok {
-				checkRange(number, reading.SI, d)
-			}
-			return reading.SI
-		}
-		list = append(list, Site{
-			CapacityKgPerKg: read("capacity", quantity.MassRatio),
-			B0PerPa:         read("b0", quantity.InversePressure),
-			HeatJPerMol:     read("heat", quantity.HeatPerMole),
-		})
+// bySolvent reads values that hold for named solvents.
+func (s *shelf) bySolvent(n *document.Node, d quantity.Dimension) map[string]Value {
+	if n == nil {
+		return nil
 	}
-	return list
+	values := map[string]Value{}
+	for _, e := range n.Entries() {
+		if s.cat.Solvents[e.Key] == nil {
+			e.Node.Fail("%q is not a solvent known here%s", e.Key, e.Node.Offer(e.Key, keysOf(s.cat.Solvents)))
+		}
+		values[e.Key] = s.value(e.Node, d)
+	}
+	return values
 }
 
-// scale makes an isotherm from that of another agent.
-func (s *shelf) scale(a *Agent, f document.Fields) {
-	capacity := s.value(f.Need("capacity factor"), quantity.Number)
-	affinity := s.value(f.Need("affinity factor"), quantity.Number)
-	other := s.cat.Agents[f.Get("like").Text()]
-	if other == nil || other.Isotherm == nil || len(other.Isotherm.Sites) == 0 {
-		f.Get("like").Fail("%q has no isotherm of its own", f.Get("like").Text())
+// beadKeys are what a soak asks of an agent with an isotherm.
+var beadKeys = []string{"bead diameter", "bead density", "bead porosity", "bead tortuosity", "hold-up", "lives", "fade", "largest dose"}
+
+// checkAgent asks for what the steps need of a kind of agent.
+func (s *shelf) checkAgent(n *document.Node, f document.Fields, a *Agent) {
+	if a.Isotherm != nil {
+		for _, key := range beadKeys {
+			f.Need(key)
+		}
+		if a.Lives != nil && a.Lives.SI < 1 {
+			f.Get("lives").Fail("%q is less than one use", a.Lives.Text)
+		}
+		checkBead(f, a)
+	}
+	switch a.Kind {
+	case "sieve", "oxide":
+		f.Need("isotherm")
+	case "salt":
+		f.Need("hydrates")
+		f.Need("claim")
+		f.Need("hold-up")
+	case "reactive":
+		f.Need("reaction")
+	}
+}
+
+// checkBead compares a bed with its beads: packed spheres fill 55 to 70 % of it.
+func checkBead(f document.Fields, a *Agent) {
+	if a.BulkDensity == nil || a.BeadDensity == nil || a.BeadDensity.SI == 0 {
 		return
 	}
-	for _, site := range other.Isotherm.Sites {
-		site.CapacityKgPerKg *= capacity.SI
-		site.B0PerPa *= affinity.SI
-		a.Isotherm.Sites = append(a.Isotherm.Sites, site)
+	const least, most = 0.5, 0.7
+	if filled := a.BulkDensity.SI / a.BeadDensity.SI; filled < least || filled > most {
+		f.Get("bead density").Fail("the bulk density is %.2f of it; packed beads fill %.2f to %.2f of a bed", filled, least, most)
 	}
 }
 
 func (s *shelf) readHistories() {
-	seen := map[string]bool{}
-	for _, n := range s.root(historiesFile).Items() {
-		f := n.Map(with("key", "text", "temperature", "residual", "band")...)
-		h := History{Key: f.Need("key").Text(), Text: f.Need("text").Text()}
-		if seen[h.Key] {
-			f.Get("key").Fail("%q stands twice", h.Key)
-		}
-		seen[h.Key] = true
-		if t := f.Get("temperature"); t != nil {
-			reading, _ := t.Quantity(quantity.Temperature)
-			h.TemperatureK = reading.SI
-		}
-		h.ResidualKgPerKg = Value{Text: f.Need("residual").Text(), Origin: s.origin(f)}
-		if reading, ok := f.Get("residual").Quantity(quantity.MassRatio); ok {
-			h.ResidualKgPerKg.SI = reading.SI
-			if reading.SI < 0 || reading.SI > 0.25 {
-				f.Get("residual").Fail("%q is outside 0 to 25 g/100 g", h.ResidualKgPerKg.Text)
+	seen := map[string]int{}
+	s.each(historiesFile, func(list *document.Node) {
+		for _, n := range list.Items() {
+			h := s.history(n)
+			if at, ok := seen[h.Key]; ok && !s.owning {
+				n.Fail("%q stands twice", h.Key)
+			} else if ok {
+				s.cat.Histories[at] = h
+				continue
 			}
+			seen[h.Key] = len(s.cat.Histories)
+			s.cat.Histories = append(s.cat.Histories, h)
 		}
-		if band := f.Get("band"); band != nil {
-			h.ResidualKgPerKg.Low, h.ResidualKgPerKg.High = span(band, quantity.MassRatio)
-		}
-		s.cat.Histories = append(s.cat.Histories, h)
+	})
+}
+
+func (s *shelf) history(n *document.Node) History {
+	f := n.Map(with("key", "text", "temperature", "residual", "band")...)
+	h := History{Key: f.Need("key").Text(), Text: f.Need("text").Text()}
+	if t := f.Get("temperature"); t != nil {
+		reading, _ := t.Quantity(quantity.Temperature)
+		h.TemperatureK = reading.SI
 	}
+	h.ResidualKgPerKg = Value{Text: f.Need("residual").Text(), Origin: s.origin(f)}
+	if reading, ok := f.Get("residual").Quantity(quantity.MassRatio); ok {
+		h.ResidualKgPerKg.SI = reading.SI
+		if reading.SI < 0 || reading.SI > 0.25 {
+			f.Get("residual").Fail("%q is outside 0 to 25 g/100 g", h.ResidualKgPerKg.Text)
+		}
+	}
+	if band := f.Get("band"); band != nil {
+		h.ResidualKgPerKg.Low, h.ResidualKgPerKg.High = span(band, quantity.MassRatio)
+		if r := h.ResidualKgPerKg; r.SI < r.Low || r.SI > r.High {
+			band.Fail("%q does not hold the value, %q", band.Text(), r.Text)
+		}
+	}
+	return h
 }

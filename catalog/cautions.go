@@ -1,5 +1,7 @@
 package catalog
 
+import "parch/internal/document"
+
 // stepKinds are the kinds of step that a caution may speak of, those to come included.
 var stepKinds = []string{"settle", "trap", "forerun", "carrier", "salt", "soak", "column", "reactive", "buy"}
 
@@ -9,19 +11,25 @@ func (s *shelf) readCautions() {
 		classes[pair[0]] = true
 	}
 	seen := map[string]bool{}
-	for _, n := range s.root(cautionsFile).Items() {
-		f := n.Map(with("code", "level", "text", "steps", "agents", "classes", "solvents", "peroxide", "flammable", "reclaimed")...)
-		c := Caution{
-			Code: f.Need("code").Text(), Level: f.Need("level").OneOf("info", "caution", "danger"), Text: f.Need("text").Text(),
-			Steps: known(f.Get("steps"), stepKinds), Agents: known(f.Get("agents"), keysOf(s.cat.Agents)),
-			Classes: known(f.Get("classes"), keysOf(classes)), Solvents: known(f.Get("solvents"), keysOf(s.cat.Solvents)),
-			Peroxide: f.Get("peroxide").Bool(), Flammable: f.Get("flammable").Bool(), Reclaimed: f.Get("reclaimed").Bool(),
-			Origin: s.origin(f),
+	s.each(cautionsFile, func(list *document.Node) {
+		for _, n := range list.Items() {
+			s.readCaution(n, classes, seen)
 		}
-		if seen[c.Code] {
-			f.Get("code").Fail("%q stands twice", c.Code)
-		}
-		seen[c.Code] = true
-		s.cat.Cautions = append(s.cat.Cautions, c)
+	})
+}
+
+func (s *shelf) readCaution(n *document.Node, classes, seen map[string]bool) {
+	f := n.Map(with("code", "level", "text", "steps", "agents", "classes", "solvents", "peroxide", "flammable", "reclaimed")...)
+	c := Caution{
+		Code: f.Need("code").Text(), Level: f.Need("level").OneOf("info", "caution", "danger"), Text: f.Need("text").Text(),
+		Steps: known(f.Get("steps"), stepKinds), Agents: known(f.Get("agents"), keysOf(s.cat.Agents)),
+		Classes: known(f.Get("classes"), keysOf(classes)), Solvents: known(f.Get("solvents"), keysOf(s.cat.Solvents)),
+		Peroxide: f.Get("peroxide").Bool(), Flammable: f.Get("flammable").Bool(), Reclaimed: f.Get("reclaimed").Bool(),
+		Origin: s.origin(f),
 	}
+	if seen[c.Code] {
+		f.Get("code").Fail("%q stands twice", c.Code)
+	}
+	seen[c.Code] = true
+	s.cat.Cautions = append(s.cat.Cautions, c)
 }

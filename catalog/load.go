@@ -12,7 +12,7 @@ import (
 	"parch/internal/document"
 )
 
-//go:embed *.yaml solvents/*.yaml
+//go:embed *.yaml *.csv solvents/*.yaml
 var files embed.FS
 
 var builtIn = sync.OnceValues(func() (*Catalog, error) { return Parse(files) })
@@ -25,12 +25,22 @@ func Load() (*Catalog, error) { return builtIn() }
 // each kind and one for each solvent in solvents/. All problems of all files are
 // reported at once, each with its file and line.
 func Parse(fsys fs.FS) (*Catalog, error) {
+	s, err := read(fsys, nil)
+	if err != nil {
+		return nil, err
+	}
+	return s.cat, nil
+}
+
+// read reads a catalog and lays the user's own files over it.
+func read(fsys fs.FS, own []File) (*shelf, error) {
 	names, err := list(fsys)
 	if err != nil {
 		return nil, err
 	}
 	s := newShelf(names)
 	s.open(fsys)
+	s.openOwn(own)
 	s.readSources()
 	s.readDate()
 	s.readPractice()
@@ -43,11 +53,14 @@ func Parse(fsys fs.FS) (*Catalog, error) {
 	s.readEmissions()
 	s.readAssays()
 	s.readCautions()
+	s.readDiameters()
+	s.readCarriers()
+	s.readTables(fsys)
 	s.validate()
 	if err := s.err(); err != nil {
 		return nil, err
 	}
-	return s.cat, nil
+	return s, nil
 }
 
 // The files of a catalog.
@@ -63,12 +76,17 @@ const (
 	emissionsFile = "emissions.yaml"
 	assaysFile    = "assays.yaml"
 	cautionsFile  = "cautions.yaml"
+	carriersFile  = "carriers.yaml"
+	diameterFile  = "diameters.yaml"
+	pairsFile     = "carrier-pairs.csv"
+	ternaryFile   = "ternary.csv"
+	layersFile    = "organic-layers.csv"
 )
 
 // list names the files to read, sorted, so that problems come in a fixed order.
 func list(fsys fs.FS) ([]string, error) {
 	names := []string{
-		agentsFile, apparatusFile, assaysFile, cautionsFile, dateFile, emissionsFile, historiesFile,
+		agentsFile, apparatusFile, assaysFile, carriersFile, cautionsFile, dateFile, diameterFile, emissionsFile, historiesFile,
 		matrixFile, practiceFile, pricesFile, sourcesFile,
 	}
 	solvents, err := fs.Glob(fsys, "solvents/*.yaml")
@@ -99,19 +117,22 @@ func (s *shelf) open(fsys fs.FS) {
 	workers.Wait()
 }
 
-// err joins the problems of all files.
+// err joins the problems of all files, those of the user's own first.
 func (s *shelf) err() error {
 	var all []error
-	for _, f := range s.files {
+	for _, f := range slices.Concat(s.own, s.files) {
 		all = append(all, f.err)
 		if f.root != nil {
 			all = append(all, f.root.Problems().Err())
 		}
 	}
+	for _, t := range s.tables {
+		all = append(all, t.err())
+	}
 	return errors.Join(all...)
 }
 
-// root is the top of a file, nil where the file could not be read.
+// root is the top of a file of the catalog itself, nil where it could not be read.
 func (s *shelf) root(name string) *document.Node {
 	for _, f := range s.files {
 		if f.name == name {
@@ -119,6 +140,20 @@ func (s *shelf) root(name string) *document.Node {
 		}
 	}
 	return nil
+}
+
+// each visits the file of a kind and then the same kind in the user's own files.
+func (s *shelf) each(name string, visit func(n *document.Node)) {
+	if root := s.root(name); root != nil {
+		visit(root)
+	}
+	s.owning = true
+	defer func() { s.owning = false }()
+	for _, f := range s.own {
+		if n := f.kinds.Get(strings.TrimSuffix(name, ".yaml")); n != nil {
+			visit(n)
+		}
+	}
 }
 
 // solventFiles are the tops of the solvent files with the key that each name promises.
@@ -131,3 +166,6 @@ func (s *shelf) solventFiles() (keys []string, roots []*document.Node) {
 	}
 	return keys, roots
 }
+
+// BuiltIn is the folder that Load reads.
+func BuiltIn() fs.FS { return files }

@@ -8,24 +8,26 @@ var verdicts = []string{"ok", "caution", "unsuitable", "dangerous"}
 // that the catalog does not hold.
 func (s *shelf) readMatrix() {
 	s.cat.Matrix = map[[2]string]Verdict{}
-	f := s.root(matrixFile).Map("common", "classes", "solvents")
-	common := s.origin(f.Need("common").Map(with()...))
-	for _, group := range []*document.Node{f.Need("classes"), f.Get("solvents")} {
-		for _, class := range group.Entries() {
-			for _, row := range class.Node.Entries() {
-				if s.cat.Agents[row.Key] == nil {
-					row.Node.Fail("%q is not an agent known here%s", row.Key, row.Node.Offer(row.Key, keysOf(s.cat.Agents)))
+	s.each(matrixFile, func(n *document.Node) {
+		f := n.Map("common", "classes", "solvents")
+		common := s.common(f.Get("common"))
+		for _, group := range []*document.Node{f.Get("classes"), f.Get("solvents")} {
+			for _, class := range group.Entries() {
+				for _, row := range class.Node.Entries() {
+					if s.cat.Agents[row.Key] == nil {
+						row.Node.Fail("%q is not an agent known here%s", row.Key, row.Node.Offer(row.Key, keysOf(s.cat.Agents)))
+					}
+					s.cat.Matrix[[2]string{class.Key, row.Key}] = s.verdict(row.Node, common)
 				}
-				s.cat.Matrix[[2]string{class.Key, row.Key}] = s.verdict(row.Node, common)
 			}
 		}
-	}
+	})
 }
 
 // verdict reads {word: reason}, with an origin of its own where the common one does not hold.
-func (s *shelf) verdict(n *document.Node, common Origin) Verdict {
+func (s *shelf) verdict(n *document.Node, common *Origin) Verdict {
 	f := n.Map(with(verdicts...)...)
-	v := Verdict{Origin: common}
+	v := Verdict{Origin: s.originOr(f, common)}
 	for _, word := range verdicts {
 		if !f.Has(word) {
 			continue
@@ -37,9 +39,6 @@ func (s *shelf) verdict(n *document.Node, common Origin) Verdict {
 	}
 	if v.Word == "" && n.IsMap() {
 		n.Fail("gives no verdict; write one of ok, caution, unsuitable, dangerous with the reason")
-	}
-	if f.Has("source") || f.Has("confidence") {
-		v.Origin = s.origin(f)
 	}
 	return v
 }

@@ -31,6 +31,7 @@ var practiceKeys = map[string]quantity.Dimension{
 	"settle-interface":      quantity.Share,
 	"soak-attended":         quantity.Time,
 	"oven-attended":         quantity.Time,
+	"dose-minimum":          quantity.MassConcentration,
 	"dose-maximum":          quantity.MassConcentration,
 	"still-rate-weak":       quantity.Rate,
 	"still-rate-strong":     quantity.Rate,
@@ -38,6 +39,21 @@ var practiceKeys = map[string]quantity.Dimension{
 	"water-molar-volume":    perMole,
 	"karl-fischer-time":     quantity.Time,
 	"buy-attended":          quantity.Time,
+	"forerun-attended":      quantity.Time,
+	"forerun-heel":          quantity.Share,
+	"forerun-discard":       quantity.Share,
+	"salt-attended":         quantity.Time,
+	"salt-contact":          quantity.Time,
+	"reactive-attended":     quantity.Time,
+	"reactive-reflux":       quantity.Time,
+	"reactive-spent":        quantity.Time,
+	"drum-attended":         quantity.Time,
+	"sieve-ketone-water":    quantity.WaterContent,
+	"stirred-slurry-rate":   quantity.Rate,
+	"bed-void":              quantity.Share,
+	"trap-reading":          quantity.Volume,
+	"storage-rise-septum":   quantity.WaterContent,
+	"storage-rise-drum":     quantity.WaterContent,
 	"site-room":             quantity.Temperature,
 	"site-pressure":         quantity.Pressure,
 	"site-receiver":         quantity.Temperature,
@@ -48,15 +64,22 @@ var practiceKeys = map[string]quantity.Dimension{
 
 func (s *shelf) readPractice() {
 	s.cat.Practice = Practice{}
-	f := s.root(practiceFile).Map(keysOf(practiceKeys)...)
-	for _, key := range keysOf(practiceKeys) {
-		n := f.Need(key)
-		if practiceKeys[key] == perMole {
-			s.cat.Practice[key] = s.molarVolume(n)
-			continue
+	s.each(practiceFile, func(n *document.Node) {
+		f := n.Map(keysOf(practiceKeys)...)
+		for _, key := range keysOf(practiceKeys) {
+			entry := f.Get(key)
+			if !s.owning {
+				entry = f.Need(key)
+			}
+			switch {
+			case entry == nil:
+			case practiceKeys[key] == perMole:
+				s.cat.Practice[key] = s.molarVolume(entry)
+			default:
+				s.cat.Practice[key] = s.value(entry, practiceKeys[key])
+			}
 		}
-		s.cat.Practice[key] = s.value(n, practiceKeys[key])
-	}
+	})
 }
 
 // molarVolume reads "18.9 cm3/mol".

@@ -10,28 +10,37 @@ import (
 // services are priced items that are neither solvent, agent nor apparatus.
 var services = map[string]string{
 	"technician": "hour", "electricity": "kwh", "cooling-water": "m3", "karl-fischer": "test",
-	"waste-aqueous": "kg", "waste-flammable-liquid": "kg", "waste-halogenated-liquid": "kg", "waste-wet-solid": "kg",
+	"waste-aqueous": "kg", "waste-flammable-liquid": "kg", "waste-halogenated-liquid": "kg", "waste-reactive": "kg", "waste-wet-solid": "kg",
+	"nitrogen": "litre",
 }
 
 func (s *shelf) readPrices() {
 	s.cat.Prices = map[string]Price{}
-	f := s.root(pricesFile).Map("kept under", "items")
-	date := f.Need("kept under").Date()
 	units := s.priceUnits()
-	for _, e := range f.Need("items").Entries() {
-		unit, ok := units[e.Key]
-		if !ok {
-			e.Node.Fail("%q is nothing that is priced here%s", e.Key, e.Node.Offer(e.Key, keysOf(units)))
+	s.each(pricesFile, func(n *document.Node) {
+		f := n.Map("kept under", "common", "dry grades", "items")
+		list := priceList{date: f.Need("kept under").Date(), common: s.common(f.Get("common"))}
+		list.waterMax = s.optional(f.Get("dry grades"), quantity.WaterContent)
+		for _, e := range f.Need("items").Entries() {
+			unit, ok := units[e.Key]
+			if !ok {
+				e.Node.Fail("%q is nothing that is priced here%s", e.Key, e.Node.Offer(e.Key, keysOf(units)))
+			}
+			s.cat.Prices[e.Key] = s.price(e, unit, list)
 		}
-		p := s.price(e.Node, unit)
-		p.Item, p.Unit, p.Date = e.Key, unit, date
-		s.cat.Prices[e.Key] = p
-	}
+	})
 	for _, item := range keysOf(services) {
 		if _, ok := s.cat.Prices[item]; !ok {
-			f.Get("items").Fail("%q is missing", item)
+			s.root(pricesFile).Fail("%q is missing", item)
 		}
 	}
+}
+
+// priceList is what the prices of one file have in common.
+type priceList struct {
+	date     string
+	common   *Origin
+	waterMax *Value // of dry grades
 }
 
 // priceUnits lists what may be priced and the unit of each.
@@ -52,9 +61,18 @@ func (s *shelf) priceUnits() map[string]string {
 	return units
 }
 
-func (s *shelf) price(n *document.Node, unit string) Price {
-	f := n.Map(with("label", "price", "band", "water")...)
-	p := Price{Label: f.Need("label").Text(), Origin: s.origin(f), WaterMax: s.optional(f.Get("water"), quantity.WaterContent)}
+func (s *shelf) price(e document.Entry, unit string, list priceList) Price {
+	f := e.Node.Map(with("label", "price", "band", "water")...)
+	p := Price{Item: e.Key, Unit: unit, Date: list.date, Origin: s.originOr(f, list.common)}
+	if _, dry := strings.CutSuffix(e.Key, "-dry"); dry {
+		p.WaterMax = list.waterMax
+	}
+	if water := f.Get("water"); water != nil {
+		p.WaterMax = s.optional(water, quantity.WaterContent)
+	}
+	if p.Label = s.label(e.Key); p.Label == "" || f.Has("label") {
+		p.Label = f.Need("label").Text()
+	}
 	money, ok := f.Need("price").Money()
 	if !ok {
 		return p
@@ -70,6 +88,23 @@ func (s *shelf) price(n *document.Node, unit string) Price {
 		p.Low, p.High = moneySpan(band, money)
 	}
 	return p
+}
+
+// label names what is known by name in the catalog; "" for services.
+func (s *shelf) label(item string) string {
+	if v := s.cat.Solvents[item]; v != nil {
+		return v.Name + ", reagent grade"
+	}
+	if v := s.cat.Solvents[strings.TrimSuffix(item, "-dry")]; v != nil {
+		return v.Name + ", dry grade"
+	}
+	if a := s.cat.Agents[item]; a != nil {
+		return a.Name
+	}
+	if a := s.cat.Apparatus[item]; a != nil {
+		return a.Name
+	}
+	return ""
 }
 
 // moneySpan reads "12 to 40 EUR/kg" around a price.

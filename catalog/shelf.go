@@ -10,16 +10,20 @@ import (
 
 // shelf is a catalog while it is being read.
 type shelf struct {
-	cat   *Catalog
-	files []file
-	cited map[string]bool           // source ids that a number rests on
-	tops  map[string]*document.Node // of the solvent files, by key
+	cat    *Catalog
+	files  []file
+	own    []file // the user's own
+	owning bool   // whether an own file is being read
+	tables []*table
+	cited  map[string]bool           // source ids that a number rests on
+	tops   map[string]*document.Node // of the solvents, by key
 }
 
 type file struct {
-	name string
-	root *document.Node
-	err  error
+	name  string
+	root  *document.Node
+	err   error
+	kinds document.Fields // of an own file
 }
 
 func newShelf(names []string) *shelf {
@@ -43,7 +47,29 @@ func (s *shelf) origin(f document.Fields) Origin {
 		Source:     s.cite(f.Need("source")),
 		Confidence: Confidence(f.Need("confidence").OneOf(grades...)),
 		Note:       f.Get("note").Text(),
+		Own:        s.owning,
 	}
+}
+
+// originOr is origin where a part of a file has an origin in common.
+func (s *shelf) originOr(f document.Fields, common *Origin) Origin {
+	if common == nil || f.Has("source") || f.Has("confidence") {
+		return s.origin(f)
+	}
+	o := *common
+	if f.Has("note") {
+		o.Note = join(f.Get("note").Text(), o.Note)
+	}
+	return o
+}
+
+// common reads the origin that holds where a row names none of its own.
+func (s *shelf) common(n *document.Node) *Origin {
+	if n == nil {
+		return nil
+	}
+	o := s.origin(n.Map(with()...))
+	return &o
 }
 
 // cite reads a source id and checks that the reference is known.
@@ -61,12 +87,15 @@ func (s *shelf) cite(n *document.Node) string {
 
 // value reads a number with its unit, band and origin. A missing node gives the
 // zero Value; whoever needs it has said so already.
-func (s *shelf) value(n *document.Node, d quantity.Dimension) Value {
+func (s *shelf) value(n *document.Node, d quantity.Dimension) Value { return s.valueOr(n, d, nil) }
+
+// valueOr is value where a part of a file has an origin in common.
+func (s *shelf) valueOr(n *document.Node, d quantity.Dimension, common *Origin) Value {
 	if n == nil {
 		return Value{}
 	}
 	f := n.Map(with("value", "band")...)
-	v := Value{Origin: s.origin(f)}
+	v := Value{Origin: s.originOr(f, common)}
 	number := f.Need("value")
 	reading, ok := number.Quantity(d)
 	if !ok {
@@ -149,6 +178,7 @@ var limits = map[quantity.Dimension]limit{
 	quantity.Number:                {0, 1000, "0 to 1000"},
 	quantity.HeatPerMole:           {0, 3e5, "0 to 300 kJ/mol"},
 	quantity.InversePressure:       {0, 1, "0 to 1 1/Pa"},
+	quantity.HeatCapacity:          {100, 10e3, "0.1 to 10 kJ/kg/K"},
 }
 
 const jPerKWh = 3.6e6
@@ -161,5 +191,24 @@ func checkRange(n *document.Node, si float64, d quantity.Dimension) {
 	}
 	if si < l.low || si > l.high {
 		n.Fail("%q is outside %s", n.Text(), l.text)
+	}
+}
+
+// items are those of a list that may be left out.
+func items(n *document.Node) []*document.Node {
+	if n == nil {
+		return nil
+	}
+	return n.Items()
+}
+
+// checkKey refuses a key that could not stand in a route, a price or a workbook name.
+func (s *shelf) checkKey(e document.Entry) {
+	for i, r := range e.Key {
+		letter := r >= 'a' && r <= 'z' || r >= '0' && r <= '9'
+		if !letter && (r != '-' || i == 0 || i == len(e.Key)-1) {
+			e.Node.Fail("the key %q is not made of small letters, digits and hyphens", e.Key)
+			return
+		}
 	}
 }

@@ -1,7 +1,10 @@
 package catalog
 
 import (
+	"maps"
 	"math"
+	"runtime"
+	"sync"
 
 	"parch/internal/document"
 	"parch/internal/quantity"
@@ -11,31 +14,63 @@ import (
 // waterKey is the solvent that all others are dried of.
 const waterKey = "water"
 
+var solventKeys = []string{
+	"key", "name", "cas", "formula", "class", "aliases", "hydrogen bonds",
+	"molar mass", "boiling point", "melting point", "critical temperature", "flash point", "autoignition",
+	"vapour pressure", "heat of vaporization", "heat capacity", "density", "viscosity", "known miss", "water pair", "hazards",
+}
+
+// ownSolventKeys may stand in an own file besides.
+var ownSolventKeys = append([]string{"water solubility"}, solventKeys...)
+
 func (s *shelf) readSolvents() {
 	s.cat.Solvents = map[string]*Solvent{}
 	keys, roots := s.solventFiles()
-	for i, root := range roots {
-		if root == nil {
+	for i, solvent := range s.solvents(roots) {
+		if solvent == nil {
 			continue
 		}
-		solvent := s.solvent(root)
 		if solvent.Key != "" && solvent.Key != keys[i] {
-			root.Fail("key %q does not match the name of the file, %q", solvent.Key, keys[i])
+			roots[i].Fail("key %q does not match the name of the file, %q", solvent.Key, keys[i])
 		}
 		s.cat.Solvents[keys[i]] = solvent
 	}
 	if len(roots) > 0 && s.cat.Solvents[waterKey] == nil {
 		s.root(sourcesFile).Fail("solvents/%s.yaml is missing", waterKey)
 	}
+	s.each("solvents", s.readOwnSolvents)
 }
 
-func (s *shelf) solvent(root *document.Node) *Solvent {
-	f := root.Map("key", "name", "cas", "formula", "class", "aliases", "hydrogen bonds",
-		"molar mass", "boiling point", "melting point", "critical temperature", "flash point", "autoignition",
-		"vapour pressure", "heat of vaporization", "heat capacity", "density", "viscosity", "known miss", "water pair", "hazards")
+// solvents reads the files of the solvents, as many at a time as there are
+// processors. Each reader keeps its own notes of what was cited.
+func (s *shelf) solvents(roots []*document.Node) []*Solvent {
+	list := make([]*Solvent, len(roots))
+	readers := min(runtime.GOMAXPROCS(0), max(len(roots), 1))
+	notes := make([]*shelf, readers)
+	var group sync.WaitGroup
+	for w := range readers {
+		notes[w] = &shelf{cat: s.cat, cited: map[string]bool{}, tops: map[string]*document.Node{}}
+		group.Go(func() {
+			for i := w; i < len(roots); i += readers {
+				if roots[i] != nil {
+					list[i] = notes[w].solvent(roots[i], roots[i].Map(solventKeys...))
+				}
+			}
+		})
+	}
+	group.Wait()
+	for _, n := range notes {
+		maps.Copy(s.cited, n.cited)
+		maps.Copy(s.tops, n.tops)
+	}
+	return list
+}
+
+// solvent reads a full entry.
+func (s *shelf) solvent(root *document.Node, f document.Fields) *Solvent {
 	v := &Solvent{
 		Key: f.Need("key").Text(), Name: f.Need("name").Text(), CAS: f.Need("cas").Text(),
-		Formula: f.Need("formula").Text(), Class: f.Need("class").Text(), Aliases: f.Get("aliases").Texts(),
+		Formula: f.Need("formula").Text(), Class: f.Need("class").Text(), Aliases: f.Get("aliases").Texts(), Own: s.owning,
 
 		MolarMass:           s.value(f.Need("molar mass"), quantity.MolarMass),
 		BoilingPoint:        s.value(f.Need("boiling point"), quantity.Temperature),
@@ -48,18 +83,25 @@ func (s *shelf) solvent(root *document.Node) *Solvent {
 	for _, p := range properties {
 		*p.of(v) = s.curve(f.Need(p.key), p, v.MolarMass.SI)
 	}
+	if v.Key != waterKey {
+		v.Water = s.waterPair(f.Need("water pair"))
+		v.HBond = f.Need("hydrogen bonds").OneOf("weak", "strong")
+	}
+	s.finish(root, f, v)
+	return v
+}
+
+// finish fills in what follows from an entry and checks it.
+func (s *shelf) finish(root *document.Node, f document.Fields, v *Solvent) {
 	v.Pure = thermo.Pure{
 		Key: v.Key, MolarMassKgPerMol: v.MolarMass.SI, MeltingK: v.MeltingPoint.SI, CriticalK: v.CriticalTemperature.SI,
 		VapourPressurePa: v.VapourPressure.Correlation, HeatOfVaporizationJ: v.HeatOfVaporization.Correlation,
 		HeatCapacityJPerMolK: v.HeatCapacity.Correlation, DensityKgPerM3: v.Density.Correlation, ViscosityPaS: v.Viscosity.Correlation,
 	}
-	if v.Key != waterKey {
-		v.Water = s.waterPair(f.Need("water pair"))
-		v.HBond = f.Need("hydrogen bonds").OneOf("weak", "strong")
+	if v.HBond != "" {
 		v.StillRate = s.cat.Practice["still-rate-"+v.HBond]
 	}
 	s.checkSolvent(root, f, v)
-	return v
 }
 
 // waterPair reads the NRTL set with water as component 1 of the published order.
@@ -67,13 +109,13 @@ func (s *shelf) waterPair(n *document.Node) *WaterPair {
 	if n == nil {
 		return nil
 	}
-	f := n.Map("parameters", "range", "quality", "fitted to", "solubility band")
+	f := n.Map("parameters", "range", "quality", "fitted to", "solubility band", "known miss", "limits")
 	p := f.Need("parameters").Map(with("a12", "b12", "a21", "b21", "alpha")...)
 	w := &WaterPair{
 		A12: p.Need("a12").Number(), B12: kelvin(p.Need("b12")),
 		A21: p.Need("a21").Number(), B21: kelvin(p.Need("b21")), Alpha: p.Need("alpha").Number(),
 		Quality: f.Need("quality").OneOf("A", "B", "C"), FittedTo: f.Need("fitted to").Text(),
-		Origin: s.origin(p), SolubilityBand: 1,
+		Origin: s.origin(p), SolubilityBand: 1, KnownMiss: f.Get("known miss").Text(),
 	}
 	if w.Alpha < 0.1 || w.Alpha > 0.6 {
 		p.Get("alpha").Fail("%v is outside 0.1 to 0.6", w.Alpha)
@@ -91,8 +133,28 @@ func (s *shelf) waterPair(n *document.Node) *WaterPair {
 			band.Fail("factor %v is outside 1 to 10", w.SolubilityBand)
 		}
 	}
+	for _, item := range items(f.Get("limits")) {
+		w.Limits = append(w.Limits, modelLimit(item))
+	}
 	w.NRTL = thermo.BinaryNRTL(w.A12, w.B12, w.A21, w.B21, w.Alpha)
 	return w
+}
+
+// modelLimit reads {not below: 20 °C, reason: ...}.
+func modelLimit(n *document.Node) (l thermo.Limit) {
+	f := n.Map("not below", "not above", "reason")
+	read := func(key string) float64 {
+		if f.Get(key) == nil {
+			return 0
+		}
+		reading, _ := f.Get(key).Quantity(quantity.Temperature)
+		return reading.SI
+	}
+	l.LowestK, l.HighestK, l.Reason = read("not below"), read("not above"), f.Need("reason").Text()
+	if l.LowestK == 0 && l.HighestK == 0 {
+		n.Fail(`gives neither "not below" nor "not above"`)
+	}
+	return l
 }
 
 // kelvin reads a parameter in kelvin that is no temperature and may be negative.
@@ -105,7 +167,7 @@ func kelvin(n *document.Node) float64 {
 }
 
 func (s *shelf) hazards(n *document.Node) Hazards {
-	f := n.Map("peroxides", "halogenated", "alkali metals", "flammability", "iarc", "toxicity", "exposure limit")
+	f := n.Map("peroxides", "halogenated", "alkali metals", "flammability", "explosive range", "iarc", "toxicity", "exposure limit")
 	h := Hazards{Halogenated: f.Need("halogenated").Bool()}
 	for _, fact := range []struct {
 		key  string
@@ -113,7 +175,7 @@ func (s *shelf) hazards(n *document.Node) Hazards {
 		into *string
 	}{
 		{"peroxides", true, &h.PeroxideClass}, {"alkali metals", true, &h.AlkaliNote}, {"flammability", true, &h.Flammability},
-		{"iarc", false, &h.IARC}, {"toxicity", false, &h.Toxicity}, {"exposure limit", false, &h.ExposureLimit},
+		{"explosive range", false, &h.ExplosiveRange}, {"iarc", false, &h.IARC}, {"toxicity", false, &h.Toxicity}, {"exposure limit", false, &h.ExposureLimit},
 	} {
 		entry := f.Get(fact.key)
 		if fact.need {

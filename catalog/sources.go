@@ -12,18 +12,33 @@ func (s *shelf) readDate() { s.cat.Date = s.root(dateFile).Map("date").Need("dat
 // readSources comes first: every other file cites by id.
 func (s *shelf) readSources() {
 	s.cat.Sources = map[string]Source{}
-	for _, e := range s.root(sourcesFile).Entries() {
-		s.cat.Sources[e.Key] = Source{ID: e.Key, Reference: e.Node.Text()}
+	var all []document.Entry
+	s.each(sourcesFile, func(n *document.Node) {
+		for _, e := range n.Entries() {
+			s.cat.Sources[e.Key] = Source{ID: e.Key, Reference: e.Node.Text(), Own: s.owning}
+			all = append(all, e)
+		}
+	})
+	for _, e := range all { // a reference is written out, so that none can point in a circle
+		if other, ok := s.cat.Sources[e.Node.Text()]; ok {
+			e.Node.Fail("%q is only the id of another source; write the reference out", other.ID)
+		}
 	}
 }
 
-// checkCitations reports references that no number rests on.
+// checkCitations reports references that no number rests on. With own files laid
+// over the catalog only theirs are asked: they may replace what others rested on.
 func (s *shelf) checkCitations() {
-	for _, e := range s.root(sourcesFile).Entries() {
-		if !s.cited[e.Key] {
-			e.Node.Fail("no number rests on this source; cite it or remove it")
+	s.each(sourcesFile, func(n *document.Node) {
+		if len(s.own) > 0 && !s.owning {
+			return
 		}
-	}
+		for _, e := range n.Entries() {
+			if !s.cited[e.Key] {
+				e.Node.Fail("no number rests on this source; cite it or remove it")
+			}
+		}
+	})
 }
 
 // keysOf lists the keys of a map, sorted.

@@ -29,6 +29,7 @@ type Origin struct {
 	Source     string // id of a Source
 	Confidence Confidence
 	Note       string
+	Own        bool // from the user's own file
 }
 
 // Value is one number of the catalog in SI units.
@@ -45,6 +46,7 @@ func (v Value) Banded() bool { return v.Low != 0 || v.High != 0 }
 // Source is a reference in full.
 type Source struct {
 	ID, Reference string
+	Own           bool // from the user's own file
 }
 
 // Curve is a correlation and its origin.
@@ -58,6 +60,8 @@ type Curve struct {
 type Solvent struct {
 	Key, Name, CAS, Formula, Class string
 	Aliases                        []string
+	Own                            bool     // from the user's own file
+	Estimates                      []string // what the entry left out and how it was filled in; nil for most
 
 	MolarMass, BoilingPoint, MeltingPoint, CriticalTemperature Value  // kg/mol, K, K, K
 	FlashPoint, Autoignition                                   *Value // K; nil where none is known
@@ -76,62 +80,35 @@ type Solvent struct {
 type WaterPair struct {
 	A12, B12, A21, B21, Alpha float64
 	TMinK, TMaxK              float64
-	Quality                   string  // A, B or C
+	Quality                   string  // A, B or C; D where it rests on one solubility
 	SolubilityBand            float64 // scatter of published solubility at 25 C, as a factor (1.05 = 5 %); 1 where none is stated
 	BandOrigin                Origin  // of SolubilityBand
 	NRTL                      thermo.NRTL
+	Limits                    []thermo.Limit // where the set must not be used
 	Origin
-	FittedTo string
+	FittedTo  string
+	KnownMiss string // where the pair is known to be off and why; "" for most
 }
 
 // Hazards lists what must be known before the solvent is heated or dried.
 type Hazards struct {
-	PeroxideClass string // A, B, C, D or "none"
-	PeroxideNote  string
-	Halogenated   bool
-	Flammability  string
-	Toxicity      string
-	IARC          string
-	ExposureLimit string
-	AlkaliNote    string
-	Facts         []Fact // the same, each with its origin
-	Origin               // of the peroxide class
+	PeroxideClass  string // A, B, C, D or "none"
+	PeroxideNote   string
+	Halogenated    bool
+	Flammability   string
+	ExplosiveRange string // share of the vapour in air
+	Toxicity       string
+	IARC           string
+	ExposureLimit  string
+	AlkaliNote     string
+	Facts          []Fact // the same, each with its origin
+	Origin                // of the peroxide class
 }
 
 // Fact is a statement in words and its origin.
 type Fact struct {
 	What, Text string
 	Origin
-}
-
-// Agent is a drying agent named by its material.
-type Agent struct {
-	Key, Name, Kind string // Kind: "sieve", "salt", "reactive", "oxide"
-	Isotherm        *Isotherm
-	BulkDensity     *Value  // kg/m3
-	BeadDiameter    *Value  // m
-	BeadDensity     *Value  // kg/m3, of the bead with its pores
-	BeadPorosity    *Value  // -, macropores
-	BeadTortuosity  *Value  // -
-	HoldUp          *Value  // m3 solvent kept per kg of drained agent
-	Lives           *Value  // uses before discard when regenerated
-	Fade            *Value  // share of capacity lost per regeneration
-	MaxDose         *Value  // kg/m3
-	LoadingBand     float64 // factor either way on the loading, 1 = none stated
-}
-
-// Isotherm is q = sum_i qs_i b_i p/(1 + b_i p), b_i = b0_i exp(Q_i/(R T)),
-// p in Pa, q in kg water per kg agent.
-type Isotherm struct {
-	Sites []Site
-	Origin
-}
-
-// Site is one term of an Isotherm.
-type Site struct {
-	CapacityKgPerKg float64
-	B0PerPa         float64
-	HeatJPerMol     float64
 }
 
 // History is how a sieve was activated and kept, and what water it still holds.
@@ -150,21 +127,6 @@ type Verdict struct {
 
 // Allowed reports whether a route may use the pair without acceptance by name.
 func (v Verdict) Allowed() bool { return v.Word == "ok" || v.Word == "caution" }
-
-// Apparatus is a piece of equipment.
-type Apparatus struct {
-	Key, Name, Kind string // Kind: "still", "receiver", "vessel", "oven"
-	Returns         string // receivers: "light", "heavy" or "either"
-	SetUp           *Value // s, beyond the usual set-up of a trap
-	Volume          *Value // m3: flask, vessel or receiver (usable for water)
-	FillVolume      *Value // m3: receiver, liquid held before anything returns
-	Fill            *Value // share of the volume that may be filled
-	Power           *Value // W
-	Load            *Value // kg per oven run
-	Energy          *Value // J per oven run
-	Life            *Value // s of service
-	Breakage        *Value // share of the price per year
-}
 
 // Price is an indicative default price per unit.
 type Price struct {
@@ -194,7 +156,8 @@ type Practice map[string]Value
 
 // Catalog is the whole shelf.
 type Catalog struct {
-	Date      string // ISO date of the data
+	Own       []string // names of the user's own files, in the order given
+	Date      string   // ISO date of the data
 	Sources   map[string]Source
 	Solvents  map[string]*Solvent
 	Agents    map[string]*Agent
@@ -206,6 +169,11 @@ type Catalog struct {
 	Emissions map[string]Value // kg CO2e per kg by "making/KEY" and "burning/KEY"; "electricity" per kWh
 	Assays    map[string]Assay // "coulometric", "volumetric"
 	Cautions  []Caution
+	Carriers  map[string]*Carrier
+	Pairs     map[[2]string]*CarrierPair  // {solvent, carrier}
+	Ternaries map[[2]string]*TernarySet   // {alcohol, carrier}
+	Layers    map[[2]string]*OrganicLayer // {alcohol, carrier}
+	Diameters map[string]Value            // m, kinetic diameter by solvent, "water" included
 }
 
 // Assay is a Karl Fischer method as it is practised.
@@ -226,4 +194,24 @@ func (c *Catalog) Verdict(solvent *Solvent, agent string) (v Verdict, ok bool) {
 	}
 	v, ok = c.Matrix[[2]string{solvent.Class, agent}]
 	return v, ok
+}
+
+// Apparatus is a piece of equipment.
+type Apparatus struct {
+	Key, Name, Kind string // Kind: one of apparatusKinds
+	Own             bool   // from the user's own file
+	Returns         string // receivers: "light", "heavy" or "either"
+	SetUp           *Value // s, beyond the usual set-up of a trap
+	Volume          *Value // m3: flask, vessel or receiver (usable for water)
+	FillVolume      *Value // m3: receiver, liquid held before anything returns
+	Fill            *Value // share of the volume that may be filled
+	Power           *Value // W
+	Load            *Value // kg per oven run
+	Energy          *Value // J per oven run
+	Diameter        *Value // m: column
+	Length          *Value // m: bed or packing of a column
+	Stages          *Value // equilibrium stages of a fractionating column at total reflux
+	Cooling         *Value // W taken up by a chiller
+	Life            *Value // s of service
+	Breakage        *Value // share of the price per year
 }

@@ -26,6 +26,7 @@ const (
 // checkSolvent compares the numbers of a solvent with each other.
 func (s *shelf) checkSolvent(root *document.Node, f document.Fields, v *Solvent) {
 	s.tops[v.Key] = root
+	checkFormula(f, v)
 	for _, p := range properties {
 		checkCurve(f.Get(p.key), p, v)
 	}
@@ -42,6 +43,24 @@ func (s *shelf) checkSolvent(root *document.Node, f document.Fields, v *Solvent)
 	}
 	if f.Has("vapour pressure") && v.VapourPressure.Check() == nil {
 		checkBoiling(f, v, readAllowance(f.Get("known miss"), v))
+	}
+}
+
+// molarMassWithin is how far a molar mass may be from the formula.
+const molarMassWithin = 5e-4
+
+// checkFormula compares the formula with the molar mass and the hazards.
+func checkFormula(f document.Fields, v *Solvent) {
+	count, err := parseFormula(v.Formula)
+	if err != nil {
+		f.Get("formula").Fail("%v", err)
+		return
+	}
+	if sum := count.kgPerMol(); v.MolarMass.SI > 0 && math.Abs(v.MolarMass.SI/sum-1) > molarMassWithin {
+		f.Get("molar mass").Fail("%s weighs %.3f g/mol, not %.3f", v.Formula, sum*1e3, v.MolarMass.SI*1e3)
+	}
+	if count.halogenated() != v.Hazards.Halogenated && f.Has("hazards") {
+		f.Get("hazards").Fail("\"halogenated\" does not fit the formula, %s", v.Formula)
 	}
 }
 
@@ -116,6 +135,8 @@ func (s *shelf) checkAliases() {
 }
 
 // checkPairs makes sure that the matrix speaks of every solvent with every agent.
+// A gap is reported where it can be closed: at an own solvent or own agent, or in
+// the matrix.
 func (s *shelf) checkPairs() {
 	for _, key := range keysOf(s.cat.Solvents) {
 		v := s.cat.Solvents[key]
@@ -123,9 +144,14 @@ func (s *shelf) checkPairs() {
 			continue
 		}
 		for _, agent := range keysOf(s.cat.Agents) {
-			if _, ok := s.cat.Verdict(v, agent); !ok {
-				s.root(matrixFile).Fail("nothing is said of %s with %s (class %q)", v.Key, agent, v.Class)
+			if _, ok := s.cat.Verdict(v, agent); ok {
+				continue
 			}
+			where := s.root(matrixFile)
+			if v.Own {
+				where = s.tops[key]
+			}
+			where.Fail("nothing is said of %s with %s (class %q)", v.Key, agent, v.Class)
 		}
 	}
 }

@@ -16,7 +16,7 @@ func shelfCopy(t *testing.T) fstest.MapFS {
 	t.Helper()
 	copied := fstest.MapFS{}
 	source := os.DirFS(".")
-	for _, pattern := range []string{"*.yaml", "solvents/*.yaml"} {
+	for _, pattern := range []string{"*.yaml", "*.csv", "solvents/*.yaml"} {
 		names, err := fs.Glob(source, pattern)
 		if err != nil {
 			t.Fatal(err)
@@ -77,7 +77,7 @@ func TestProblemsAreFound(t *testing.T) {
 		{"band beside the value", "practice.yaml", "band: 35 to 70 %", "band: 55 to 70 %", 0, `heat-share.band: "55 to 70 %" does not hold the value, "50 %"`},
 		{"price per the wrong unit", "prices.yaml", "50 EUR/hour", "50 EUR/day", 0, `items.technician.price: "50 EUR/day" is not per hour; write it like "50 EUR/hour"`},
 		{"price of nothing known", "prices.yaml", "  sieve-3a:", "  sieve-3b:", 0, `items.sieve-3b: "sieve-3b" is nothing that is priced here; did you mean `},
-		{"kind unknown", "agents.yaml", "{name: sodium metal, kind: reactive}", "{name: sodium metal, kind: metal}", 0, `sodium.kind: "metal" is not allowed here; allowed: sieve, oxide, salt, reactive`},
+		{"kind unknown", "agents.yaml", "name: sodium metal\n  kind: reactive", "name: sodium metal\n  kind: metal", 1, `sodium.kind: "metal" is not allowed here; allowed: sieve, salt, reactive, oxide`},
 		{"caution of an unknown step", "cautions.yaml", "steps: [salt]", "steps: [salting]", 0, `[10].steps[0]: "salting" is not known here; did you mean "salt"?`},
 		{"anchor", "catalog.yaml", "date: 2026-12-01", "date: &a 2026-12-01", 0, `date: anchors (&name) are not used here; write the value out where it is needed`},
 	} {
@@ -104,7 +104,7 @@ func TestAllProblemsAtOnce(t *testing.T) {
 	var want []string
 	for _, c := range [][3]string{
 		{"apparatus.yaml", "kind:   oven", "kind:   stove"},
-		{"practice.yaml", "value: 0.75 h", "value: 0.75"},
+		{"practice.yaml", "trap-setup:            {value: 0.75 h", "trap-setup:            {value: 0.75"},
 		{"prices.yaml", "0.20 EUR/kwh", "0,20 EUR/kwh"},
 		{"solvents/toluene.yaml", "110.6 °C", "110.6 m"},
 		{"solvents/water.yaml", "99.974 °C", "99.974"},

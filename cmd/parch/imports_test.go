@@ -17,6 +17,7 @@ var floors = []string{
 	"parch/internal/inspect",
 	"parch/internal/study",
 	"parch/internal/search",
+	"parch/internal/spread",
 	"parch/internal/costs",
 	"parch/internal/routes",
 	"parch/internal/steps",

@@ -15,39 +15,53 @@ import (
 // OwnSource is the source id of a price that the job gives.
 const OwnSource = "job"
 
-// NewBook returns the prices of the catalog overlaid by those of the job. The
-// catalog's prices are indicative and stand at par in the currency of the job:
-// no rate of exchange is applied, and the note of such a price says so. All
-// prices that cannot be used are reported at once.
+// NewBook returns the prices of the catalog overlaid by those of the job; of
+// several packs the smallest order counts until Justified is asked. A price of
+// the catalog is indicative. It is converted at the job's dated rate where there
+// is one; else it stands at par, which its note says, or is left out where the
+// job's currency is none of job.Currencies. All prices that cannot be used are
+// reported at once.
 func NewBook(cat *catalog.Catalog, j *job.Job) (Book, error) {
 	book := make(Book, len(cat.Prices)+len(j.Prices))
 	var problems []error
 	for _, item := range slices.Sorted(maps.Keys(cat.Prices)) {
-		price, err := defaultPrice(cat, cat.Prices[item], j.Currency)
+		price, ok, err := defaultPrice(cat, cat.Prices[item], j)
 		if err != nil {
 			problems = append(problems, err)
-			continue
+		} else if ok {
+			book[item] = price
 		}
-		book[item] = price
 	}
-	for _, own := range j.Prices {
-		if own.PerUnit.IsNegative() {
-			problems = append(problems, fmt.Errorf("price of %s is negative: %s", own.Item, own.PerUnit))
-			continue
+	reference := ReferenceDate(cat, j)
+	own := byItem(j.Prices)
+	for _, item := range slices.Sorted(maps.Keys(own)) {
+		offers := own[item]
+		for _, own := range offers {
+			if own.PerUnit.IsNegative() {
+				problems = append(problems, fmt.Errorf("price of %s is negative: %s", own.Item, own.PerUnit))
+			}
 		}
-		book[own.Item] = ownPrice(cat, own, j.Invented)
+		book[item] = ownPrice(cat, offers, j, reference)
 	}
 	return book, errors.Join(problems...)
 }
 
-func defaultPrice(cat *catalog.Catalog, p catalog.Price, currency string) (Price, error) {
+func byItem(prices []job.Price) map[string][]job.Price {
+	offers := map[string][]job.Price{}
+	for _, p := range prices {
+		offers[p.Item] = append(offers[p.Item], p)
+	}
+	return offers
+}
+
+func defaultPrice(cat *catalog.Catalog, p catalog.Price, j *job.Job) (price Price, ok bool, err error) {
 	perUnit, err := decimal.NewFromString(p.Amount)
 	if err != nil || perUnit.IsNegative() {
-		return Price{}, fmt.Errorf("price of %s in the catalog is not an amount: %q", p.Item, p.Amount)
+		return Price{}, false, fmt.Errorf("price of %s in the catalog is not an amount: %q", p.Item, p.Amount)
 	}
-	note := p.Note
-	if p.Currency != "" && p.Currency != currency {
-		note = join(note, fmt.Sprintf("published in %s, used at par in %s", p.Currency, currency))
+	perUnit, note, ok := intoCurrency(perUnit, p, j)
+	if !ok {
+		return Price{}, false, nil
 	}
 	return Price{
 		Item:       p.Item,
@@ -59,30 +73,64 @@ func defaultPrice(cat *catalog.Catalog, p catalog.Price, currency string) (Price
 		SourceText: cat.Sources[p.Source].Reference,
 		Confidence: string(p.Confidence),
 		Indicative: true,
+		Flag:       Indicative,
+		Packs:      []Pack{{Price: perUnit, PerUnit: perUnit, Date: p.Date, Minimum: 1, LeadDays: -1, Flag: Indicative}},
 		Note:       note,
-	}, nil
+	}, true, nil
 }
 
-func ownPrice(cat *catalog.Catalog, p job.Price, invented bool) Price {
+// intoCurrency brings a price of the catalog into the currency of the job.
+func intoCurrency(perUnit decimal.Decimal, p catalog.Price, j *job.Job) (decimal.Decimal, string, bool) {
+	if p.Currency == "" || p.Currency == j.Currency {
+		return perUnit, p.Note, true
+	}
+	for _, rate := range j.Rates {
+		if rate.From == p.Currency {
+			return perUnit.Mul(rate.PerUnit), join(p.Note, fmt.Sprintf("published in %s, at %s %s of %s", p.Currency, rate.PerUnit, j.Currency, rate.Date)), true
+		}
+	}
+	if slices.Contains(job.Currencies, j.Currency) && slices.Contains(job.Currencies, p.Currency) {
+		return perUnit, join(p.Note, fmt.Sprintf("published in %s, used at par in %s", p.Currency, j.Currency)), true
+	}
+	return perUnit, "", false
+}
+
+func ownPrice(cat *catalog.Catalog, offers []job.Price, j *job.Job, reference string) Price {
+	first := offers[0]
 	price := Price{
-		Item:       p.Item,
-		Label:      label(cat, p.Item),
-		Unit:       p.Unit,
-		PerUnit:    p.PerUnit,
+		Item:       first.Item,
+		Label:      label(cat, first.Item),
+		Unit:       first.Unit,
 		Own:        true,
-		Date:       p.Date,
 		Source:     OwnSource,
 		SourceText: "the job file",
 		Confidence: "own",
 	}
-	if p.PackSize > 0 {
-		price.Note = fmt.Sprintf("from a pack of %g %s", p.PackSize, p.Unit)
+	if j.PriceFile != "" && !isRate(first) {
+		price.SourceText = j.PriceFile
 	}
-	if invented {
+	if j.Invented {
 		price.Confidence = string(catalog.Invented)
-		price.Note = join(price.Note, "invented for demonstration")
+	}
+	for _, own := range offers {
+		price.Packs = append(price.Packs, ownPack(own, reference))
+	}
+	slices.SortStableFunc(price.Packs, bySmallestOrder)
+	price = price.from(chosenPack(price.Packs, decimal.Zero))
+	if isRate(first) && price.Flag == Undated {
+		price.Flag = NoFlag // a rate of the site is as new as the job
 	}
 	return price
+}
+
+// isRate tells the rates of the site from what is bought in packs.
+func isRate(p job.Price) bool {
+	return p.PackSize.IsZero() && p.Date == "" && slices.Contains([]string{"technician", "electricity", "cooling-water", "loop-cooling"}, p.Item)
+}
+
+var extraLabels = map[string]string{
+	"waste-container": "waste container with its collection", "waste-minimum": "least charge of a waste collection",
+	"loop-cooling": "heat taken by the cooling loop", "chiller": "chiller",
 }
 
 // label names an item for the reader.
@@ -98,6 +146,9 @@ func label(cat *catalog.Catalog, item string) string {
 	}
 	if s, ok := cat.Solvents[item]; ok {
 		return s.Name
+	}
+	if text, ok := extraLabels[item]; ok {
+		return text
 	}
 	return item
 }

@@ -27,7 +27,7 @@ func exampleCatalog() *catalog.Catalog {
 func TestOwnPricesOverlayDefaults(t *testing.T) {
 	j := &job.Job{Currency: "EUR", Prices: []job.Price{
 		{Item: "technician", Unit: "hour", PerUnit: decimal.NewFromInt(48)},
-		{Item: "alumina", Unit: "kg", PerUnit: decimal.RequireFromString("7.9"), PackSize: 2.5, Date: "2026-10-01"},
+		{Item: "alumina", Unit: "kg", PerUnit: decimal.RequireFromString("7.9"), PackSize: decimal.RequireFromString("2.5"), PackPrice: decimal.RequireFromString("19.75"), Date: "2026-10-01"},
 	}}
 	book, err := costs.NewBook(exampleCatalog(), j)
 	if err != nil {

@@ -1,8 +1,10 @@
-// Package costs turns usage and prices into a bill in decimal money.
+// Package costs turns usage and prices into a bill in decimal money, and into
+// what has to be bought, when, and whether equipment pays.
 //
 // One rounding rule: the quantity of a line is rounded to 12 decimals of its
-// unit when it becomes decimal. Amounts are exact products, heads and totals
-// exact sums; nothing else is rounded. Money is shown to the cent.
+// unit when it becomes decimal, and the price of a unit of a pack to 12 decimals.
+// Amounts are exact products, heads and totals exact sums; nothing else is
+// rounded. Money is shown to the cent.
 package costs
 
 import (
@@ -21,8 +23,39 @@ type Price struct {
 	Source      string // id of a catalog source, or "job"
 	SourceText  string
 	Confidence  string
-	Indicative  bool // a default of the catalog: check before use
+	Indicative  bool   // a default of the catalog: check before use
+	Flag        Flag   // why a total that rests on it is in doubt
+	Packs       []Pack // what is on offer, the smallest order first; PerUnit is that of one of them
 	Note        string
+}
+
+// Flag says why a price has to be checked before a total that rests on it is
+// relied upon.
+type Flag string
+
+// The flags, the gravest last.
+const (
+	NoFlag     Flag = ""
+	Indicative Flag = "indicative"
+	Undated    Flag = "undated"
+	Old        Flag = "older than a year"
+	Expired    Flag = "no longer valid"
+)
+
+// Pack is an offer of one size.
+type Pack struct {
+	Size       decimal.Decimal // in the unit of the price; 0 stands for any amount
+	Price      decimal.Decimal // of one pack; of one unit where Size is 0
+	PerUnit    decimal.Decimal
+	Date       string // ISO date, "" where not given
+	ValidUntil string // ISO date, "" where not given
+	Minimum    int    // packs to order at least
+	LeadDays   int    // from order to delivery; -1 where not given
+	ShelfDays  int    // after opening; 0 where it keeps or is not given
+	Supplier   string // the user's own text
+	Tax        string // the tax basis in the user's words
+	Flag       Flag
+	Note       string // how it came into the currency of the report
 }
 
 // Book holds the prices by item.
@@ -42,7 +75,8 @@ type Line struct {
 	Amount    decimal.Decimal
 }
 
-// Bill is the cost of one route for one batch.
+// Bill is the cost of one route for one batch. Where items have no price it holds
+// the lines that have one, and no total stands for the whole.
 type Bill struct {
 	Currency        string
 	Lines           []Line
@@ -51,4 +85,9 @@ type Bill struct {
 	LitresDelivered decimal.Decimal
 	PerLitre        decimal.Decimal // PerBatch / LitresDelivered, rounded to 6 decimals
 	PerYear         decimal.Decimal
+	NoPrice         []string // items that are used and have no price, sorted
+	Doubts          []string // what the total rests on that has to be checked, in sentences
 }
+
+// Priced reports whether every item has a price.
+func (b *Bill) Priced() bool { return len(b.NoPrice) == 0 }

@@ -20,6 +20,7 @@ type Node struct {
 	entries  []Entry // of a map, in the order of the file
 	items    []*Node // of a list
 	broken   bool    // a problem with this value is already recorded
+	place    string  // of a table: what stands for the path, "" in a document
 }
 
 // Entry is a key and its value.
@@ -47,12 +48,37 @@ func (n *Node) Path() string {
 	}
 	before := n.parent.Path()
 	switch {
+	case n.place == "row":
+		return "" // the line says it
+	case n.place != "":
+		return n.place
 	case n.key == "":
 		return before + "[" + strconv.Itoa(n.index) + "]"
 	case before == "":
 		return segment(n.key)
 	}
 	return before + "." + segment(n.key)
+}
+
+// Where is the place of the value for a message: "job.yaml:14: lots[0].water".
+func (n *Node) Where() string {
+	where := n.problems.where(n.Line())
+	if path := n.Path(); path != "" {
+		where += ": " + path
+	}
+	return where
+}
+
+// With is a single value with a text added to it: an amount and the currency that
+// stands in another column.
+func (n *Node) With(suffix string) *Node {
+	if n == nil || n.IsList() || n.IsMap() || suffix == "" {
+		return n
+	}
+	joined, raw := *n, *n.raw
+	raw.Value += suffix
+	joined.raw = &raw
+	return &joined
 }
 
 // segment keeps a path short and printable.

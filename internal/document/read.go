@@ -12,18 +12,25 @@ import (
 // Fields are the values of a map by key. A key that is not there gives a nil Node.
 type Fields struct {
 	node  *Node
-	byKey map[string]*Node
+	known []Entry // few enough that a search is quicker than a map
 }
 
 // Get returns the value of a key, nil where it is not there.
-func (f Fields) Get(key string) *Node { return f.byKey[key] }
+func (f Fields) Get(key string) *Node {
+	for _, e := range f.known {
+		if e.Key == key {
+			return e.Node
+		}
+	}
+	return nil
+}
 
 // Has reports whether the key is there.
-func (f Fields) Has(key string) bool { return f.byKey[key] != nil }
+func (f Fields) Has(key string) bool { return f.Get(key) != nil }
 
 // Need is Get for a key that must be there; it records a problem where it is not.
 func (f Fields) Need(key string) *Node {
-	if n := f.byKey[key]; n != nil {
+	if n := f.Get(key); n != nil {
 		return n
 	}
 	if f.node != nil && !f.node.broken && f.node.IsMap() {
@@ -34,10 +41,11 @@ func (f Fields) Need(key string) *Node {
 
 // Map reads a set of keys. Others than the allowed ones are problems.
 func (n *Node) Map(allowed ...string) Fields {
-	fields := Fields{node: n, byKey: map[string]*Node{}}
-	for _, e := range n.Entries() {
+	entries := n.Entries()
+	fields := Fields{node: n, known: make([]Entry, 0, len(entries))}
+	for _, e := range entries {
 		if slices.Contains(allowed, e.Key) {
-			fields.byKey[e.Key] = e.Node
+			fields.known = append(fields.known, e)
 			continue
 		}
 		offer := n.Offer(e.Key, allowed)

@@ -46,20 +46,30 @@ func (r *reader) equipment(n *document.Node) {
 }
 
 func (r *reader) stock(n *document.Node) {
-	known := slices.Concat(r.agentKeys(), slices.Sorted(maps.Keys(r.cat.Solvents)))
 	lines := map[string]int{}
 	for _, entry := range listOf(n) {
-		f := entry.Map("item", "on hand")
-		item := r.known(f.Need("item"), known, "an agent or a solvent of the catalog")
-		kg, ok := r.measure(f.Need("on hand"), quantity.Mass, between(0, 1e6, "0 kg to 1000000 kg"))
+		f := entry.Map("item", "on hand", "safety stock")
+		item := r.known(f.Need("item"), r.storedItems(), "an agent or a solvent of the catalog")
+		stock := Stock{Item: item}
+		var ok bool
+		stock.OnHandKg, ok = r.measure(f.Need("on hand"), quantity.Mass, between(0, 1e6, "0 kg to 1000000 kg"))
+		if safety := f.Get("safety stock"); safety != nil {
+			stock.SafetyKg, _ = r.measure(safety, quantity.Mass, between(0, 1e6, "0 kg to 1000000 kg"))
+		}
 		if item == "" || !ok || r.twice(entry, item, lines) {
 			continue
 		}
-		r.job.Stock = append(r.job.Stock, Stock{Item: item, OnHandKg: kg})
+		r.job.Stock = append(r.job.Stock, stock)
 	}
-	if n != nil {
-		r.notYet(n)
+}
+
+// storedItems lists what may lie on the shelf: agents, solvents and their dry grades.
+func (r *reader) storedItems() []string {
+	items := r.agentKeys()
+	for _, key := range r.solventKeys() {
+		items = append(items, key, key+"-dry")
 	}
+	return items
 }
 
 func (r *reader) accept(n *document.Node) {

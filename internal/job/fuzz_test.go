@@ -88,12 +88,14 @@ func checkJob(t *testing.T, j *Job) {
 	}
 	items := map[string]bool{}
 	for _, p := range j.Prices {
-		if items[p.Item] || p.Unit == "" || p.PerUnit.IsNegative() {
+		if items[p.Item] && p.PackSize.IsZero() || p.Unit == "" || p.PerUnit.IsNegative() {
 			t.Errorf("price %+v", p)
 		}
 		items[p.Item] = true
 		in("price", p.PerUnit.InexactFloat64(), 0, 1e18)
-		in("pack", p.PackSize, 0, 1e6)
+		in("pack", p.PackSize.InexactFloat64(), 0, 1e6)
+		in("smallest order", float64(p.MinimumOrder), 0, 1e5)
+		in("lead time", float64(p.LeadDays), -1, 1100)
 		in("water of the grade", p.WaterMax, 0, 0.01)
 	}
 }

@@ -11,65 +11,140 @@ import (
 	"parch/internal/quantity"
 )
 
-// prices reads the own price list. A file name is understood and not used yet.
+// priceKeys are the keys of a price and, with "currency", the columns of a price list.
+var priceKeys = []string{"item", "pack", "price", "date", "valid until", "minimum order", "lead time", "shelf life", "supplier", "tax", "water"}
+
+// numericColumns of a price list, where a decimal comma may stand.
+var numericColumns = []string{"pack", "price", "minimum order", "lead time", "shelf life", "water"}
+
+// prices reads the own prices, from the job or from the price list that it names.
 func (r *reader) prices(n *document.Node) {
-	if n == nil {
-		return
-	}
-	if !n.IsList() && !n.IsMap() && !n.IsEmpty() {
-		r.fileName(n)
-		return
-	}
-	lines := map[string]int{}
+	offers := &offers{}
 	for _, own := range r.job.Prices { // the site's rates
-		lines[own.Item] = own.Line
+		offers.list = append(offers.list, offer{own, own.Line})
 	}
-	for _, entry := range n.Items() {
-		item, unit, own := r.price(entry)
-		if item == "" {
+	var rows []*document.Node
+	switch {
+	case n == nil:
+	case n.IsList() || n.IsMap() || n.IsEmpty():
+		rows = n.Items()
+	default:
+		rows = r.priceList(n)
+	}
+	for _, entry := range rows {
+		own, ok := r.price(entry)
+		if !ok || offers.clash(entry, own) {
 			continue
 		}
-		if line, twice := lines[item]; twice {
-			entry.Fail("a price of %q is already given on line %d", item, line)
-			continue
-		}
-		lines[item] = entry.Line()
-		if unit != "" {
-			r.job.Prices = append(r.job.Prices, own)
-		}
+		offers.list = append(offers.list, offer{own, entry.Line()})
+		r.job.Prices = append(r.job.Prices, own)
 	}
 }
 
-// price reads {item, pack, price, date, water}. item is "" where it is not known,
-// unit is "" where the price cannot be used.
-func (r *reader) price(n *document.Node) (item, unit string, own Price) {
-	f := n.Map("item", "pack", "price", "date", "water")
+// priceList reads a table of comma or semicolon separated values.
+func (r *reader) priceList(n *document.Node) []*document.Node {
+	name := r.label(n)
+	if name == "" {
+		return nil
+	}
+	if r.files == nil {
+		n.Fail("the price list %s cannot be read from here", quantity.Quote(name))
+		return nil
+	}
+	data, err := r.files(name)
+	if err != nil {
+		n.Fail("the price list %s cannot be read: %v", quantity.Quote(name), err)
+		return nil
+	}
+	table, err := document.Table(name, data, append(slices.Clone(priceKeys), "currency"), numericColumns)
+	if err != nil {
+		r.listed = err
+		return nil
+	}
+	r.list, r.job.PriceFile = table.Problems(), name
+	return table.Items()
+}
+
+// offers remembers what is priced already.
+type offers struct {
+	list []offer
+}
+
+type offer struct {
+	Price
+	line int
+}
+
+// clash reports a price that contradicts an earlier one of the same item. Packs
+// of one item may differ in size, in the smallest order (that is a price break)
+// and in the supplier; a price per unit stands alone.
+func (o *offers) clash(n *document.Node, own Price) bool {
+	for _, other := range o.list {
+		if other.Item != own.Item {
+			continue
+		}
+		perUnit := own.PackSize.IsZero() || other.PackSize.IsZero()
+		if perUnit || own.PackSize.Equal(other.PackSize) && own.MinimumOrder == other.MinimumOrder && own.Supplier == other.Supplier {
+			n.Fail("a price of %q is already given on line %d", own.Item, other.line)
+			return true
+		}
+		if other.WaterMax != own.WaterMax {
+			n.Fail("the packs of %q state different water (line %d); one item has one limit", own.Item, other.line)
+			return true
+		}
+	}
+	return false
+}
+
+// price reads one price. ok is false where it cannot be used.
+func (r *reader) price(n *document.Node) (own Price, ok bool) {
+	f := n.Map(append(slices.Clone(priceKeys), "currency")...)
 	itemNode, priceNode := f.Need("item"), f.Need("price")
-	own = Price{Date: f.Get("date").Date(), Line: n.Line()}
-	money, okMoney := r.money(priceNode)
-	item, unit = r.priced(itemNode)
+	own = Price{Line: n.Line(), Terms: r.terms(f)}
+	own.Date = r.priceDate(f.Get("date"))
+	if last := own.ValidUntil; last != "" && last < own.Date {
+		f.Get("valid until").Fail("%s is before the date of the price, %s", quantity.Quote(last), own.Date)
+	}
+	if c := f.Get("currency"); c != nil && endsInDigit(priceNode.Text()) {
+		priceNode = priceNode.With(" " + c.Text())
+	}
+	money, converted, okMoney := r.money(priceNode)
+	item, unit := r.priced(itemNode)
+	own.Item, own.Unit, own.Converted = item, unit, converted
 	if unit == "" {
-		return item, "", own
+		return own, false
 	}
 	r.gradeWater(f, item, &own)
-	own.Item, own.Unit = item, unit
 	if !okMoney {
-		return item, "", own
+		return own, false
 	}
+	return own, r.size(n, f, priceNode, money, &own)
+}
+
+func endsInDigit(text string) bool {
+	return text != "" && text[len(text)-1] >= '0' && text[len(text)-1] <= '9'
+}
+
+// size reads what the price is for: a pack or a unit.
+func (r *reader) size(n *document.Node, f document.Fields, priceNode *document.Node, money quantity.Money, own *Price) bool {
 	switch pack := f.Get("pack"); {
 	case money.Per != "" && pack != nil:
 		priceNode.Fail("%s is a price per unit, and there is a pack as well; give the price of the pack, or no pack", quantity.Quote(priceNode.Text()))
-	case money.Per != "" && !slices.Contains(perUnit[unit], money.Per):
-		priceNode.Fail("%s is not a price per %s, the unit of %q", quantity.Quote(priceNode.Text()), unit, item)
-	case money.Per != "" || pack == nil && unit == "each":
+	case money.Per != "" && !slices.Contains(perUnit[own.Unit], money.Per):
+		priceNode.Fail("%s is not a price per %s, the unit of %q", quantity.Quote(priceNode.Text()), own.Unit, own.Item)
+	case money.Per != "" || pack == nil && own.Unit == "each":
 		own.PerUnit = money.Amount
-		return item, unit, own
+		if f.Has("minimum order") {
+			f.Get("minimum order").Fail("counts packs; give a pack with its price")
+			return false
+		}
+		return true
 	case pack == nil:
-		n.Fail("%q needs a pack, such as \"pack: %s\", or a price per %s", item, packs[unit].example, unit)
+		n.Fail("%q needs a pack, such as \"pack: %s\", or a price per %s", own.Item, packs[own.Unit].example, own.Unit)
 	default:
-		return r.pack(pack, item, unit, money.Amount, own)
+		return r.pack(pack, money.Amount, own)
 	}
-	return item, "", own
+	return false
 }
 
 // packs says how the size of a pack is read, by the unit of the price.
@@ -83,11 +158,11 @@ var packs = map[string]struct {
 }
 
 // pack divides the price by the size of the pack.
-func (r *reader) pack(n *document.Node, item, unit string, price decimal.Decimal, own Price) (string, string, Price) {
-	way := packs[unit]
+func (r *reader) pack(n *document.Node, price decimal.Decimal, own *Price) bool {
+	way := packs[own.Unit]
 	reading, ok := n.Quantity(way.dimension)
 	if !ok {
-		return item, "", own
+		return false
 	}
 	text := quantity.Significant(quantity.In(reading.SI, way.dimension, way.symbol), 12) // as typed, without binary dust
 	size, err := decimal.NewFromString(text)
@@ -95,11 +170,11 @@ func (r *reader) pack(n *document.Node, item, unit string, price decimal.Decimal
 	if err != nil || size.LessThan(least) || size.GreaterThan(most) {
 		symbol := strings.TrimSpace(" " + way.symbol)
 		n.Fail("%s is not a possible pack; allowed: 0.000001 to 1000000 %s", quantity.Quote(n.Text()), symbol)
-		return item, "", own
+		return false
 	}
-	own.PackSize = size.InexactFloat64()
+	own.PackSize, own.PackPrice = size, price
 	own.PerUnit = price.DivRound(size, 12)
-	return item, unit, own
+	return true
 }
 
 // gradeWater reads the water limit of a solvent that is bought dry.
@@ -129,6 +204,11 @@ func (r *reader) priced(n *document.Node) (item, unit string) {
 	return item, unit
 }
 
+// Extras are items that have a price only where the job gives one: a waste
+// container with its collection, the least that a collection is charged, a kWh of
+// heat taken by a cooling loop, a chiller.
+var Extras = map[string]string{"waste-container": "each", "waste-minimum": "each", "loop-cooling": "kwh", "chiller": "each"}
+
 func (r *reader) unitOf(item string) string {
 	if p, ok := r.cat.Prices[item]; ok {
 		return p.Unit
@@ -142,7 +222,7 @@ func (r *reader) unitOf(item string) string {
 	if s := r.cat.Solvents[strings.TrimSuffix(item, "-dry")]; s != nil && s.Key != water {
 		return "litre"
 	}
-	return ""
+	return Extras[item]
 }
 
 // pricedItems lists every item that may have a price, sorted.
@@ -162,5 +242,18 @@ func (r *reader) pricedItems() []string {
 			items[key], items[key+"-dry"] = true, true
 		}
 	}
+	for key := range Extras {
+		items[key] = true
+	}
 	return slices.Sorted(maps.Keys(items))
+}
+
+// priceDate reads the date of a price. Without a date of the job the catalog's
+// serves to notice a slip of the pen.
+func (r *reader) priceDate(n *document.Node) string {
+	date := r.pastDate(n)
+	if date != "" && r.job.Date == "" && yearsAfter(r.cat.Date, date) > 1 {
+		r.note(n, "%s is more than a year after the catalog (%s); give the job a date to have it checked", quantity.Quote(date), r.cat.Date)
+	}
+	return date
 }

@@ -1,6 +1,7 @@
 package job
 
 import (
+	"errors"
 	"fmt"
 	"sort"
 	"strings"
@@ -16,6 +17,7 @@ import (
 var Objectives = []string{"cost", "time", "waste", "energy"}
 
 // Currencies are those in which the catalog's indicative prices are taken at par.
+// In another one an item has only the price that the job gives.
 var Currencies = []string{"EUR", "USD", "GBP", "CHF"}
 
 // stepKinds are the steps that a job may exclude.
@@ -31,13 +33,18 @@ const assumption = string(catalog.Assumption)
 // A top-level "invented: yes" marks every price of the job as invented, which
 // all output then repeats.
 func Read(name string, data []byte, cat *catalog.Catalog) (*Job, error) {
+	return ReadWith(name, data, cat, nil)
+}
+
+// ReadWith is Read for a job that may name a price list: files returns its content.
+func ReadWith(name string, data []byte, cat *catalog.Catalog, files func(name string) ([]byte, error)) (*Job, error) {
 	root, err := document.Parse(name, data)
 	if err != nil {
 		return nil, err
 	}
-	r := &reader{cat: cat, job: &Job{File: name}, problems: root.Problems()}
+	r := &reader{cat: cat, job: &Job{File: name}, problems: root.Problems(), files: files}
 	r.whole(root)
-	if err := r.problems.Err(); err != nil {
+	if err := r.err(); err != nil {
 		return nil, err
 	}
 	r.job.Warnings = r.sortedNotes()
@@ -51,6 +58,24 @@ type reader struct {
 	problems  *document.Problems
 	notes     []note
 	byDefault string // follows the currency in a message where the job does not give one
+	files     func(name string) ([]byte, error)
+	list      *document.Problems // of the price list
+	listed    error              // why the price list could not be read
+}
+
+// err is what is wrong with the job and with its price list.
+func (r *reader) err() error {
+	own, list := r.problems.Err(), r.listed
+	if r.list != nil {
+		list = r.list.Err()
+	}
+	if own != nil && list != nil {
+		return errors.Join(own, list)
+	}
+	if own != nil {
+		return own
+	}
+	return list
 }
 
 type note struct {
@@ -59,7 +84,7 @@ type note struct {
 }
 
 func (r *reader) whole(root *document.Node) {
-	f := root.Map("title", "currency", "objective", "assurance", "catalog", "prices", "site", "equipment", "stock", "accept", "exclude", "lots", "invented")
+	f := root.Map("title", "date", "currency", "rates", "objective", "assurance", "catalog", "prices", "site", "equipment", "equipment costing", "interest", "stock", "storage limits", "accept", "exclude", "lots", "invented")
 	j := r.job
 	j.Invented = f.Get("invented").Bool()
 	j.Title = r.orWord(f.Get("title"), "title", "Drying plan", r.label)
@@ -67,6 +92,8 @@ func (r *reader) whole(root *document.Node) {
 	if !f.Has("currency") {
 		r.byDefault = " (by default; \"currency\" is not given)"
 	}
+	j.Date = f.Get("date").Date()
+	r.rates(f.Get("rates"))
 	j.Objective = r.orWord(f.Get("objective"), "objective", "cost", func(n *document.Node) string { return n.OneOf(Objectives...) })
 	j.Assurance = 0.9
 	if n := f.Get("assurance"); n != nil {
@@ -79,7 +106,9 @@ func (r *reader) whole(root *document.Node) {
 	r.site(f.Get("site"))
 	r.prices(f.Get("prices"))
 	r.equipment(f.Get("equipment"))
+	r.writeOff(f)
 	r.stock(f.Get("stock"))
+	r.storage(f.Get("storage limits"))
 	r.accept(f.Get("accept"))
 	r.exclude(f.Get("exclude"))
 	r.lots(f.Need("lots"))
@@ -151,8 +180,11 @@ func (r *reader) assume(key, text string) {
 
 // note records how a value was understood.
 func (r *reader) note(n *document.Node, format string, args ...any) {
-	text := fmt.Sprintf("%s:%d: %s: %s", r.job.File, n.Line(), n.Path(), fmt.Sprintf(format, args...))
-	r.notes = append(r.notes, note{n.Line(), text})
+	order := n.Line()
+	if n.Problems() != r.problems { // of the price list: after those of the job
+		order += 1 << 20
+	}
+	r.notes = append(r.notes, note{order, n.Where() + ": " + fmt.Sprintf(format, args...)})
 }
 
 // notYet says that a key is understood and has no effect so far.
@@ -165,21 +197,6 @@ func (r *reader) sortedNotes() []string {
 		texts = append(texts, n.text)
 	}
 	return texts
-}
-
-// currency reads the currency of the job.
-func (r *reader) currency(n *document.Node) string {
-	code := n.Text()
-	if code == "" {
-		return ""
-	}
-	for _, c := range Currencies {
-		if code == c {
-			return c
-		}
-	}
-	n.Fail("%s is not served yet: the built-in prices are taken at par only for %s", quantity.Quote(code), strings.Join(Currencies, ", "))
-	return ""
 }
 
 const longestLabel = 80

@@ -39,6 +39,9 @@ lots:
 invented: yes
 `
 
+// noTerms is what an offer says that says nothing.
+var noTerms = Terms{LeadDays: unknownDays}
+
 func TestEveryKey(t *testing.T) {
 	text := strings.Replace(full, "  - {item: sodium-free, price: 1 EUR}\n", "", 1)
 	j, err := Read("job.yaml", []byte(text), shelf())
@@ -48,20 +51,21 @@ func TestEveryKey(t *testing.T) {
 	want := &Job{
 		File: "job.yaml", Title: "Spring drying plan, Fernbrook pilot hall", Currency: "EUR", Objective: "cost", Assurance: 0.9, Invented: true,
 		Prices: []Price{
-			{Item: "technician", Unit: "hour", PerUnit: decimal.RequireFromString("48"), Line: 12},
-			{Item: "electricity", Unit: "kwh", PerUnit: decimal.RequireFromString("0.24"), Line: 12},
-			{Item: "cooling-water", Unit: "m3", PerUnit: decimal.RequireFromString("4.2"), Line: 13},
-			{Item: "sieve-3a", Unit: "kg", PerUnit: decimal.RequireFromString("29.6"), PackSize: 5, Date: "2026-10-01", Line: 7},
-			{Item: "toluene-dry", Unit: "litre", PerUnit: decimal.RequireFromString("34.5"), PackSize: 20, WaterMax: 10e-6, Line: 8},
-			{Item: "still-20l", Unit: "each", PerUnit: decimal.RequireFromString("2400"), Line: 9},
-			{Item: "karl-fischer", Unit: "test", PerUnit: decimal.RequireFromString("1.2"), PackSize: 100, Line: 10},
+			{Item: "technician", Unit: "hour", PerUnit: decimal.RequireFromString("48"), Terms: noTerms, Line: 12},
+			{Item: "electricity", Unit: "kwh", PerUnit: decimal.RequireFromString("0.24"), Terms: noTerms, Line: 12},
+			{Item: "cooling-water", Unit: "m3", PerUnit: decimal.RequireFromString("4.2"), Terms: noTerms, Line: 13},
+			{Item: "sieve-3a", Unit: "kg", PerUnit: decimal.RequireFromString("29.6"), PackSize: decimal.NewFromInt(5), PackPrice: decimal.NewFromInt(148), Date: "2026-10-01", Terms: noTerms, Line: 7},
+			{Item: "toluene-dry", Unit: "litre", PerUnit: decimal.RequireFromString("34.5"), PackSize: decimal.NewFromInt(20), PackPrice: decimal.NewFromInt(690), WaterMax: 10e-6, Terms: noTerms, Line: 8},
+			{Item: "still-20l", Unit: "each", PerUnit: decimal.RequireFromString("2400"), Terms: noTerms, Line: 9},
+			{Item: "karl-fischer", Unit: "test", PerUnit: decimal.RequireFromString("1.2"), PackSize: decimal.NewFromInt(100), PackPrice: decimal.NewFromInt(120), Terms: noTerms, Line: 10},
 		},
 		Site: Site{
 			RoomK: 294.15, PressurePa: 101300, Humidity: 0.5, ReceiverK: 288.15, AttendedSecondsPerDay: 25200,
-			PeroxideLimitKgPerM3: 0.005, KarlFischer: "volumetric",
+			PeroxideLimitKgPerM3: 0.005, KarlFischer: "volumetric", Cooling: Tap, WasteContainerKg: 20,
 		},
 		Equipment: []Equipment{{"still-20l", true}, {"drum-25l", false}},
-		Stock:     []Stock{{"sieve-3a", 4}},
+		WriteOff:  StraightLine,
+		Stock:     []Stock{{Item: "sieve-3a", OnHandKg: 4}},
 		Accept:    Accept{Carriers: []string{"benzene"}, Agents: []string{"sodium"}, Unsuitable: []string{"sieve-4a"}},
 		Exclude:   Exclude{Steps: []string{"settle"}, Agents: []string{"sodium"}},
 		Lots: []Lot{
@@ -84,7 +88,6 @@ func TestEveryKey(t *testing.T) {
 			`job.yaml:8: prices[1].water: "ppm" read as mg/kg (by mass)`,
 			"job.yaml:12: site.humidity: not used yet",
 			"job.yaml:13: site.attended hours per day: not used yet",
-			"job.yaml:15: stock: not used yet",
 			"job.yaml:16: accept.carriers: not used yet",
 			"job.yaml:16: accept: sodium with dichloromethane is dangerous and stays excluded: can explode",
 			"job.yaml:20: lots[0].not below: not used yet",
@@ -123,6 +126,8 @@ func TestDefaults(t *testing.T) {
 		"site.attended hours per day = 7 h (practice, common practice, 2026-12-01)",
 		"site.peroxide limit = 5 mg/L (practice, common practice, 2026-12-01)",
 		"site.karl fischer = coulometric (assumption, assumption, 2026-12-01)",
+		"site.cooling = tap (assumption, assumption, 2026-12-01)",
+		"equipment costing = straight line (assumption, assumption, 2026-12-01)",
 		"lots[0].batches = 1 /yr (assumption, assumption, 2026-12-01)",
 		"lots[0].free water = 0 mL (assumption, assumption, 2026-12-01)",
 		"lots[0].heater = the still's own (assumption, assumption, 2026-12-01)",
@@ -139,11 +144,11 @@ func TestDefaults(t *testing.T) {
 
 // Names of files are understood, and the reader is told that they have no effect yet.
 func TestFileNames(t *testing.T) {
-	j, err := Read("job.yaml", []byte("prices: prices.csv\ncatalog: ours.yaml\n"+small), shelf())
+	j, err := Read("job.yaml", []byte("catalog: ours.yaml\n"+small), shelf())
 	if err != nil {
 		t.Fatal(err)
 	}
-	want := []string{"job.yaml:1: prices: not used yet", "job.yaml:2: catalog: not used yet"}
+	want := []string{"job.yaml:1: catalog: not used yet"}
 	if diff := cmp.Diff(want, j.Warnings); diff != "" {
 		t.Error(diff)
 	}

@@ -12,7 +12,7 @@ const zeroCelsius = 273.15
 // site reads the place and its rates. What is missing comes from the catalog's practice.
 func (r *reader) site(n *document.Node) {
 	f := n.Map("room", "pressure", "humidity", "receiver", "technician", "electricity", "cooling water",
-		"attended hours per day", "peroxide limit", "karl fischer")
+		"attended hours per day", "peroxide limit", "karl fischer", "cooling", "waste container", "waste collections")
 	r.job.Site = Site{
 		RoomK: r.orPractice(f.Get("room"), "site.room", "site-room", quantity.Temperature,
 			between(zeroCelsius+5, zeroCelsius+40, "5 °C to 40 °C")),
@@ -34,14 +34,32 @@ func (r *reader) site(n *document.Node) {
 	}
 	r.job.Site.KarlFischer = r.orWord(f.Get("karl fischer"), "site.karl fischer", "coulometric",
 		func(n *document.Node) string { return n.OneOf("coulometric", "volumetric") })
+	r.job.Site.Cooling = r.orWord(f.Get("cooling"), "site.cooling", Tap,
+		func(n *document.Node) string { return n.OneOf(Tap, Chiller, Loop) })
+	r.waste(f)
 	r.rate(f.Get("technician"), "technician", "hour")
 	r.rate(f.Get("electricity"), "electricity", "kwh")
 	r.rate(f.Get("cooling water"), "cooling-water", "m3")
 }
 
+// usualContainerKg is a waste can of 20 L of solvent (common practice, no source).
+const usualContainerKg = 20
+
+// waste reads how waste is collected.
+func (r *reader) waste(f document.Fields) {
+	site := &r.job.Site
+	site.WasteContainerKg = usualContainerKg
+	if n := f.Get("waste container"); n != nil {
+		site.WasteContainerKg, _ = r.measure(n, quantity.Mass, between(0.1, 10000, "0.1 kg to 10000 kg"))
+	}
+	if n := f.Get("waste collections"); n != nil {
+		site.WasteCollectionsPerYear, _ = r.measure(n, quantity.PerYear, between(0.1, 366, "0.1 /yr to 366 /yr"))
+	}
+}
+
 // rate reads a price per unit such as "48 EUR/h" and adds it to the job's prices.
 func (r *reader) rate(n *document.Node, item, unit string) {
-	money, ok := r.money(n)
+	money, converted, ok := r.money(n)
 	if !ok {
 		return
 	}
@@ -49,27 +67,11 @@ func (r *reader) rate(n *document.Node, item, unit string) {
 		n.Fail("%s is not a price per %s; write it like \"48 %s/%s\"", quantity.Quote(n.Text()), unit, money.Currency, perUnit[unit][0])
 		return
 	}
-	r.job.Prices = append(r.job.Prices, Price{Item: item, Unit: unit, PerUnit: money.Amount, Line: n.Line()})
+	r.job.Prices = append(r.job.Prices, Price{Item: item, Unit: unit, PerUnit: money.Amount, Line: n.Line(), Terms: Terms{LeadDays: unknownDays, Converted: converted}})
 }
 
 // perUnit lists how a price per catalog unit may be written, the usual way first.
 var perUnit = map[string][]string{
 	"hour": {"h", "hour"}, "kwh": {"kWh", "kwh"}, "m3": {"m3", "m³"}, "kg": {"kg"}, "litre": {"L", "l", "litre"},
 	"each": {"each", "piece"}, "test": {"test"},
-}
-
-// money reads an amount in the currency of the job. Negative amounts are refused.
-func (r *reader) money(n *document.Node) (money quantity.Money, ok bool) {
-	money, ok = n.Money()
-	switch {
-	case !ok:
-		return money, false
-	case money.Amount.IsNegative():
-		n.Fail("%s is negative; a price is zero or more", quantity.Quote(n.Text()))
-		return money, false
-	case r.job.Currency != "" && money.Currency != r.job.Currency:
-		n.Fail("%s is in %s, but the currency of the job is %s%s; use one currency", quantity.Quote(n.Text()), money.Currency, r.job.Currency, r.byDefault)
-		return money, false
-	}
-	return money, true
 }

@@ -9,13 +9,19 @@ import (
 // Job is a validated job in SI units.
 type Job struct {
 	File, Title string
+	Date        string  // ISO date of the plan, "" where not given
 	Currency    string  // ISO 4217 code
+	Rates       []Rate  // of exchange, into Currency
 	Objective   string  // cost, time, waste or energy
 	Assurance   float64 // chance of target that a recommended route needs, 0..1
-	Prices      []Price // own prices, in the order given
+	Prices      []Price // own prices, in the order given; an item may have several packs
+	PriceFile   string  // the price list that Prices were read from, "" for none
 	Site        Site
 	Equipment   []Equipment
+	WriteOff    string  // StraightLine or Annuity
+	Interest    float64 // share per year; 0 where not given
 	Stock       []Stock
+	Storage     []StorageLimit
 	Accept      Accept
 	Exclude     Exclude
 	Lots        []Lot
@@ -29,19 +35,55 @@ type Site struct {
 	RoomK, PressurePa, Humidity, ReceiverK float64
 	AttendedSecondsPerDay                  float64
 	PeroxideLimitKgPerM3                   float64
-	KarlFischer                            string // coulometric or volumetric
+	KarlFischer                            string  // coulometric or volumetric
+	Cooling                                string  // Tap, Chiller or Loop
+	WasteContainerKg                       float64 // what a waste container takes
+	WasteCollectionsPerYear                float64 // 0 where not given
 }
 
-// Price is a price of the user's own. Rates of the site (technician, electricity,
-// cooling water) are prices too.
+// Ways to cool a condenser.
+const (
+	Tap     = "tap"
+	Chiller = "chiller"
+	Loop    = "loop"
+)
+
+// Ways to write equipment off.
+const (
+	StraightLine = "straight line"
+	Annuity      = "annuity"
+)
+
+// Rate of exchange: one unit of From is PerUnit of the job's currency.
+type Rate struct {
+	From    string
+	PerUnit decimal.Decimal
+	Date    string
+}
+
+// Price is a price of the user's own: of a pack, or of a unit. Rates of the site
+// (technician, electricity, cooling water) are prices too.
 type Price struct {
-	Item     string
-	Unit     string          // as in catalog.Price.Unit
-	PerUnit  decimal.Decimal // job currency per unit
-	PackSize float64         // in Unit; 0 where the price is a rate
-	Date     string          // ISO date, "" where not given
-	WaterMax float64         // kg/kg, dry grades; 0 where not given
-	Line     int
+	Item      string
+	Unit      string          // as in catalog.Price.Unit
+	PerUnit   decimal.Decimal // job currency per unit
+	PackSize  decimal.Decimal // in Unit; 0 where the price is a rate
+	PackPrice decimal.Decimal // job currency; 0 where the price is a rate
+	Date      string          // ISO date, "" where not given
+	WaterMax  float64         // kg/kg, dry grades; 0 where not given
+	Terms
+	Line int
+}
+
+// Terms are what an offer says besides size and price.
+type Terms struct {
+	ValidUntil   string // ISO date, "" where not given
+	MinimumOrder int    // packs; 0 where there is none
+	LeadDays     int    // from order to delivery; -1 where not given
+	ShelfDays    int    // after opening; 0 where it keeps or is not given
+	Supplier     string // the user's own text
+	Tax          string // tax basis in the user's words
+	Converted    string // how it was brought into the job's currency, "" where it was given in it
 }
 
 // Equipment says whether an item of the catalog is at hand.
@@ -54,6 +96,13 @@ type Equipment struct {
 type Stock struct {
 	Item     string
 	OnHandKg float64
+	SafetyKg float64 // never to fall below
+}
+
+// StorageLimit is how much the site may keep of an item or of a class.
+type StorageLimit struct {
+	Item, Class string  // one of them
+	Kg, M3      float64 // one of them
 }
 
 // Accept names what is allowed although the catalog advises against it.

@@ -4,7 +4,6 @@ import (
 	"errors"
 	"fmt"
 	"math"
-	"regexp"
 	"slices"
 	"strconv"
 	"strings"
@@ -14,7 +13,43 @@ import (
 // longest is the most characters that a quantity may have; no unit needs more.
 const longest = 60
 
-var number = regexp.MustCompile(`^[+-]?(?:[0-9]+(?:\.[0-9]*)?|\.[0-9]+)(?:[eE][+-]?[0-9]+)?`)
+// leadingNumber is the number that text begins with, "" if there is none: a sign,
+// digits with at most one decimal point, an exponent.
+func leadingNumber(text string) string {
+	at := signLength(text)
+	whole := digitsLength(text[at:])
+	end := at + whole
+	if strings.HasPrefix(text[end:], ".") {
+		if fraction := digitsLength(text[end+1:]); whole+fraction > 0 {
+			end += 1 + fraction
+		}
+	}
+	if end == at {
+		return ""
+	}
+	if rest := text[end:]; rest != "" && (rest[0] == 'e' || rest[0] == 'E') {
+		sign := signLength(rest[1:])
+		if n := digitsLength(rest[1+sign:]); n > 0 {
+			end += 1 + sign + n
+		}
+	}
+	return text[:end]
+}
+
+func signLength(s string) int {
+	if s != "" && (s[0] == '+' || s[0] == '-') {
+		return 1
+	}
+	return 0
+}
+
+func digitsLength(s string) int {
+	n := 0
+	for n < len(s) && s[n] >= '0' && s[n] <= '9' {
+		n++
+	}
+	return n
+}
 
 // Parse reads a number and a unit of dimension d. The space between them may be
 // left out. Negative values are read; the caller knows what is sensible. Errors
@@ -68,7 +103,7 @@ func splitNumber(clean string) (digits, rest string, err error) {
 	if word := strings.ToLower(strings.TrimLeft(clean, "+-.")); strings.HasPrefix(word, "nan") || strings.HasPrefix(word, "inf") {
 		return "", "", fmt.Errorf("%s is not a finite number", Quote(clean))
 	}
-	digits = number.FindString(clean)
+	digits = leadingNumber(clean)
 	rest = clean[len(digits):]
 	next := strings.TrimLeft(rest, " \u00a0\u202f\u2009")
 	switch {
@@ -128,7 +163,7 @@ func allowed(d Dimension) string { return strings.Join(Units(d), ", ") }
 
 // advice shows how to write it, with the number as typed where there is one.
 func advice(text string, d Dimension) string {
-	digits := number.FindString(strings.TrimSpace(text))
+	digits := leadingNumber(strings.TrimSpace(text))
 	if digits == "" || slices.Contains([]Dimension{Share, Number}, d) {
 		return fmt.Sprintf("write it like %q", examples[d])
 	}

@@ -57,7 +57,7 @@ var units = map[Dimension][]unit{
 		{symbol: "week", factor: 7 * dayS}, {symbol: "yr", factor: yearS},
 	},
 	Length: {
-		{symbol: "m", factor: 1}, {symbol: "cm", per: 1e2}, {symbol: "mm", per: 1e3}, {symbol: "um", per: 1e6}, {symbol: "in", factor: 0.0254},
+		{symbol: "m", factor: 1}, {symbol: "cm", per: 1e2}, {symbol: "mm", per: 1e3}, {symbol: "um", per: 1e6}, {symbol: "nm", per: 1e9}, {symbol: "in", factor: 0.0254},
 	},
 	Share: {{symbol: "%", per: 1e2}},
 	MassConcentration: {

@@ -10,6 +10,8 @@ import (
 
 const secondsPerYear = 365.25 * 86400
 
+const discardedLot = "the reclaimed lot that is not dried"
+
 // account turns what a step did into what is paid for.
 func (c *Case) account(place int, o steps.Outcome, s Settings, soaks int) []StageUse {
 	var uses []StageUse
@@ -41,7 +43,7 @@ func (c *Case) account(place int, o steps.Outcome, s Settings, soaks int) []Stag
 	case steps.Buy:
 		use(steps.Purchase, c.Solvent.Key+"-dry", "litre", c.Lot.BatchM3*1e3, "the batch bought dry")
 		if c.Lot.Reclaimed {
-			use(steps.Waste, c.wasteItem(steps.SolventWaste), "kg", o.In.MassKg(), "the reclaimed lot that is not dried")
+			use(steps.Waste, c.wasteItem(steps.SolventWaste), "kg", o.In.MassKg(), discardedLot)
 		}
 	}
 	return uses
@@ -71,7 +73,7 @@ func (c *Case) sieveUses(place int, o steps.Outcome, after string) []StageUse {
 		uses = append(uses,
 			StageUse{place, steps.Use{
 				Head: steps.Energy, Item: "electricity", Unit: "kwh", Quantity: runs * oven.Energy.SI / 3.6e6,
-				Basis: fmt.Sprintf("activation: a run takes %.3g kg and %.3g kWh", oven.Load.SI, oven.Energy.SI/3.6e6),
+				Basis: fmt.Sprintf("activation: sieve is saved up for runs of %.3g kg and %.3g kWh", oven.Load.SI, oven.Energy.SI/3.6e6),
 			}},
 			StageUse{place, steps.Use{
 				Head: steps.Labour, Item: "technician", Unit: "hour", Quantity: runs * c.practice("oven-attended") / 3600,
@@ -130,11 +132,16 @@ func (c *Case) wasteItem(class steps.WasteClass) string {
 
 // wholeRoute is what is paid once a batch: showing the result, and the feed.
 func (c *Case) wholeRoute(run *Run) []StageUse {
+	tests := c.tests(run.Route)
 	injections := float64(c.Assay.Injections)
 	hours := c.practice("karl-fischer-time") / 3600
+	basis := "the product"
+	if tests > 1 {
+		basis = "the hand-over and the product"
+	}
 	uses := []StageUse{
-		{0, steps.Use{Head: steps.Testing, Item: "karl-fischer", Unit: "test", Quantity: injections, Basis: fmt.Sprintf("%.0f injections of the product", injections)}},
-		{0, steps.Use{Head: steps.Testing, Item: "technician", Unit: "hour", Quantity: hours, Basis: "sampling, test and log"}},
+		{0, steps.Use{Head: steps.Testing, Item: "karl-fischer", Unit: "test", Quantity: tests * injections, Basis: fmt.Sprintf("%.0f injections each of %s", injections, basis)}},
+		{0, steps.Use{Head: steps.Testing, Item: "technician", Unit: "hour", Quantity: tests * hours, Basis: "sampling, test and log of " + basis}},
 	}
 	if run.Route[0].Kind != steps.Buy && !c.Lot.Reclaimed {
 		uses = append(uses, StageUse{0, steps.Use{
@@ -145,8 +152,21 @@ func (c *Case) wholeRoute(run *Run) []StageUse {
 	return uses
 }
 
-// emissions of the run in kg CO2e: energy, solvent lost (making and burning),
-// agent. NaN where a factor is missing.
+// tests is how often a route is tested: at the end, and where a chosen
+// hand-over has to be met.
+func (c *Case) tests(r Route) float64 {
+	n := 1.0
+	for _, s := range r[:len(r)-1] {
+		if s.Kind == steps.Trap {
+			n++
+		}
+	}
+	return n
+}
+
+// emissions of the run in kg CO2e: energy, solvent bought (making) and lost
+// (making its replacement, burning), a lot that is discarded (burning), agent.
+// NaN where a factor is missing.
 func (c *Case) emissions(run *Run) float64 {
 	factor := func(key string) float64 {
 		if v, ok := c.Catalog.Emissions[key]; ok {
@@ -162,6 +182,10 @@ func (c *Case) emissions(run *Run) float64 {
 			total += u.Quantity * factor("electricity")
 		case u.Head == steps.SolventLost:
 			total += u.Quantity / 1e3 * density * (factor("making/"+c.Solvent.Key) + factor("burning/"+c.Solvent.Key))
+		case u.Head == steps.Purchase:
+			total += u.Quantity / 1e3 * density * factor("making/"+c.Solvent.Key)
+		case u.Head == steps.Waste && u.Basis == discardedLot:
+			total += u.Quantity * factor("burning/"+c.Solvent.Key)
 		case u.Head == steps.Agent:
 			total += u.Quantity * factor("making/"+u.Item)
 		}

@@ -101,8 +101,8 @@ func (c *Case) refuseHeating() (reason, source string) {
 	switch p := c.Lot.Peroxide; {
 	case p == nil:
 		return fmt.Sprintf("test first: %s forms peroxides (class %s) and the job gives no peroxide reading", c.Solvent.Name, h.PeroxideClass), h.Source
-	case p.ReadingKgPerM3 > limit:
-		return fmt.Sprintf("not heated: the peroxide reading of %.3g mg/L (%s) is over the site's limit of %.3g mg/L", p.ReadingKgPerM3*1e3, p.Date, limit*1e3), h.Source
+	case p.ReadingKgPerM3 > 0 && p.ReadingKgPerM3 >= limit:
+		return fmt.Sprintf("not heated: the peroxide reading of %.3g mg/L (%s) is not under the site's limit of %.3g mg/L", p.ReadingKgPerM3*1e3, p.Date, limit*1e3), h.Source
 	}
 	return "", ""
 }
@@ -172,6 +172,9 @@ func (c *Case) refusedAgents() []Excluded {
 	for _, key := range keys {
 		if v, ok := c.Catalog.Verdict(c.Solvent, key); !ok || !v.Allowed() {
 			reason, source := c.refuseAgent(key)
+			if reason == "" {
+				reason, source = "accepted by the job, but this step is not computed yet", "job"
+			}
 			out = append(out, Excluded{stepFor(c.Catalog.Agents[key]) + ":" + key, reason, source})
 		}
 	}

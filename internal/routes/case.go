@@ -64,9 +64,9 @@ func (c *Case) Dry() bool {
 	return c.Lot.FreeWaterM3 == 0 && c.Feed.Water() <= c.Limit.AcceptAt
 }
 
-// goal is what the last step of a route must reach: the acceptance limit, or
+// Goal is what the last step of a route must reach: the acceptance limit, or
 // the target itself where the limit cannot be shown.
-func (c *Case) goal() float64 {
+func (c *Case) Goal() float64 {
 	if math.IsNaN(c.Limit.AcceptAt) {
 		return c.Lot.Target
 	}

@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"math"
 
+	"parch/internal/quantity"
 	"parch/internal/steps"
 )
 
@@ -22,7 +23,7 @@ func (c *Case) Run(r Route, s Settings) (Run, error) {
 	soaks := 0
 	handOver := make([]float64, 0, len(r))
 	for i, stage := range r {
-		goal := c.goal()
+		goal := c.Goal()
 		if i < len(r)-1 {
 			goal = s.HandOverMgPerKg[i] * 1e-6
 		}
@@ -36,7 +37,7 @@ func (c *Case) Run(r Route, s Settings) (Run, error) {
 		case steps.Soak:
 			o, err = c.runSoak(lot, goal, stage.Agent, s.SoakHours[soaks], s.Sieve[soaks])
 		case steps.Buy:
-			o = steps.RunBuy(c.Mixture, lot, c.dryGrade(), c.practice("buy-attended"), c.Job.Site.RoomK)
+			o = steps.RunBuy(c.Mixture, lot, c.Lot.BatchM3, c.dryGrade(), c.practice("buy-attended"), c.Job.Site.RoomK)
 		}
 		if err != nil {
 			return Run{}, fmt.Errorf("%s: %w", stage.Kind, refused(err))
@@ -59,11 +60,18 @@ func (c *Case) Run(r Route, s Settings) (Run, error) {
 	return run, nil
 }
 
+// refusal is a step's error that is ErrRefused too and reads like the step's.
+type refusal struct{ error }
+
+func (r refusal) Is(target error) bool { return target == ErrRefused }
+
+func (r refusal) Unwrap() error { return r.error }
+
 // refused marks the errors that say that a step does not work on this lot.
 func refused(err error) error {
-	for _, known := range []error{steps.ErrNoTrap, steps.ErrNothingSettles, steps.ErrWetSieve} {
+	for _, known := range []error{steps.ErrNoTrap, steps.ErrNothingSettles, steps.ErrWetSieve, steps.ErrUnfit, steps.ErrNoSense} {
 		if errors.Is(err, known) {
-			return fmt.Errorf("%w: %w", ErrRefused, err)
+			return refusal{err}
 		}
 	}
 	return err
@@ -91,7 +99,7 @@ func (c *Case) finish(run *Run, product steps.Lot) {
 		run.CoolingWaterL += o.CoolingWaterL
 		run.SolventLostL += o.SolventLostL
 	}
-	run.HoursTotal += c.practice("karl-fischer-time") / 3600
+	run.HoursTotal += c.tests(run.Route) * c.practice("karl-fischer-time") / 3600
 	run.HoursAttended, run.EnergyKWh = sum(run.Uses, "technician"), sum(run.Uses, "electricity")
 	for _, u := range run.Uses {
 		if u.Head == steps.Waste {
@@ -170,6 +178,9 @@ func (c *Case) boilOut(lot steps.Lot, goal float64) (steps.Outcome, error) {
 }
 
 func (c *Case) runSoak(lot steps.Lot, goal float64, agent string, hours float64, after string) (steps.Outcome, error) {
+	if lot.Water() <= goal {
+		return steps.Outcome{}, refusal{fmt.Errorf("%s is at or below the %s asked for: nothing is left for a sieve", quantity.FormatWater(lot.Water()), quantity.FormatWater(goal))}
+	}
 	_, vessels := c.vessel()
 	rig := steps.SoakRig{
 		TempK: c.Job.Site.RoomK, DepthM: c.depth(vessels), Vessels: vessels,
@@ -190,7 +201,7 @@ func (c *Case) sorbent(agent, after string) steps.Sorbent {
 	return steps.Sorbent{
 		Key: agent, Loading: a.Isotherm.LoadingKgPerKg, ResidualKgPerKg: c.Lot.ResidualLoading, CapacityShare: share,
 		BeadDiameterM: a.BeadDiameter.SI, BeadKgPerM3: a.BeadDensity.SI, Porosity: a.BeadPorosity.SI, Tortuosity: a.BeadTortuosity.SI,
-		HoldUpM3PerKg: a.HoldUp.SI, MaxDoseKgPerM3: a.MaxDose.SI,
+		HoldUpM3PerKg: a.HoldUp.SI, MinDoseKgPerM3: c.practice("dose-minimum"), MaxDoseKgPerM3: a.MaxDose.SI,
 	}
 }
 

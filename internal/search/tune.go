@@ -16,8 +16,9 @@ import (
 var ErrTooSlow = errors.New("too slow")
 
 // soakHours are the stands that fit a working week (common practice, no source):
-// a shift, overnight, one to seven days and what lies between.
-var soakHours = []float64{8, 16, 24, 36, 48, 64, 72, 96, 120, 168}
+// a shift, overnight, one to seven days and what lies between, and up to four
+// weeks where nothing shorter reaches the target.
+var soakHours = []float64{8, 16, 24, 36, 48, 64, 72, 96, 120, 168, 240, 336, 504, 672}
 
 // Tuner finds the best settings of the routes of one case.
 type Tuner struct {
@@ -41,7 +42,7 @@ func (t *Tuner) score(run *routes.Run) (float64, error) {
 	if err != nil || run.Meets {
 		return value, err
 	}
-	return scoreMissed * (1 + math.Max(0, math.Log(run.WaterOut/t.Case.Lot.Target))), nil
+	return scoreMissed * (1 + math.Max(0, math.Log(run.WaterOut/t.Case.Goal()))), nil
 }
 
 // Tune returns the run with the best settings.
@@ -70,14 +71,25 @@ func handOverPlace(r routes.Route) int {
 	return -1
 }
 
+// worthASieve is how far above the goal a trap hands over at least.
+const worthASieve = 1.25
+
 // handOverRange is from what the trap can do at best to what it is given.
 func (t *Tuner) handOverRange(r routes.Route, place int) (lo, hi float64, err error) {
-	run, err := t.Case.Run(r, settings(r, place, 0, soakHours[0], routes.Discard))
+	head := r[:place+1]
+	run, err := t.Case.Run(head, settings(head, -1, 0, 0, ""))
 	if err != nil {
 		return 0, 0, err
 	}
 	trap := run.Outcomes[place]
-	return trap.Out.Water() * 1e6, trap.In.Water() * 1e6, nil
+	lo, hi = trap.Out.Water()*1e6, trap.In.Water()*1e6
+	if least := worthASieve * t.Case.Goal() * 1e6; lo < least {
+		lo = least // a sieve after a trap that is at the goal already adds nothing
+	}
+	if lo >= hi {
+		return 0, 0, fmt.Errorf("%w: the lot is nearly at the goal: a trap leaves nothing for the sieve", routes.ErrRefused)
+	}
+	return lo, hi, nil
 }
 
 func settings(r routes.Route, place int, handOver, hours float64, after string) routes.Settings {

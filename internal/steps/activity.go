@@ -15,8 +15,14 @@ func WaterAtActivity(m *thermo.Mixture, activity, tK float64) (float64, error) {
 		return math.NaN(), err
 	}
 	if !ok {
-		highest = 1 - 1e-9
+		highest = 1
 	}
+	return waterAtActivity(m, activity, tK, highest)
+}
+
+// waterAtActivity looks up to highest, the saturated solution or 1.
+func waterAtActivity(m *thermo.Mixture, activity, tK, highest float64) (float64, error) {
+	highest = math.Min(highest, 1-1e-9)
 	if m.Activity(highest, tK) <= activity {
 		return highest, nil
 	}

@@ -8,8 +8,8 @@ import (
 // Activation is what was done to a sieve before it is used.
 type Activation struct {
 	OvenK       float64
-	VacuumPa    float64 // pressure in a vacuum oven; 0: an open oven, in room air
-	PurgedDewK  float64 // dew point of a dry gas swept through; 0: none
+	VacuumPa    float64 // pressure in a vacuum oven; 0: none, an oven in room air
+	PurgePa     float64 // water in a dry gas swept through; 0: none is
 	ClosedHot   bool    // bottled hot, at once
 	Days        float64 // since then
 	LeftOpen    bool    // stood open to the room in those days
@@ -84,9 +84,9 @@ const lowestActivationK = 423.15
 func (a Activation) ovenWaterPa() float64 {
 	switch {
 	case a.VacuumPa > 0:
-		return math.Min(a.VacuumPa, a.RoomWaterPa)
-	case a.PurgedDewK > 0:
-		return math.Min(SaturationPa(a.PurgedDewK), a.RoomWaterPa)
+		return a.VacuumPa
+	case a.PurgePa > 0:
+		return a.PurgePa
 	}
 	return a.RoomWaterPa
 }
@@ -99,15 +99,4 @@ func (a Activation) check() error {
 		return err
 	}
 	return checkAmount("a vacuum", "Pa", a.VacuumPa, 0, 110e3)
-}
-
-// SaturationPa is the vapour pressure of water over liquid water, or over
-// undercooled water below 0 °C, in air, by the Magnus equation with the
-// coefficients of Sonntag (1990) as printed in WMO-No. 8, annex 4.B (from
-// memory); -45 to 60 °C within 0.6 %:
-//
-//	e = 611.2 Pa exp(17.62 t/(243.12 °C + t))
-func SaturationPa(tK float64) float64 {
-	t := tK - 273.15
-	return 611.2 * math.Exp(17.62*t/(243.12+t))
 }

@@ -19,7 +19,9 @@ type Charge struct {
 var ErrNoCharge = errors.New("no charge of sorbent")
 
 // SoakSeries stands a lot over several charges of fresh sorbent, one after the
-// other, decanting between them. Each charge keeps its share of solvent.
+// other, decanting between them. Each charge keeps its share of solvent. Portions
+// leave a lot drier than one charge of the same mass if each is given its time;
+// cut short, a small charge has less area to work with.
 func SoakSeries(m *thermo.Mixture, feed Lot, charges []Charge, sorbent Sorbent, rig SoakRig) (Outcome, error) {
 	if len(charges) == 0 {
 		return Outcome{}, ErrNoCharge

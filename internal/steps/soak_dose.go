@@ -14,10 +14,15 @@ type SoakDose struct {
 	Speed    float64 // enough area to be in time, if it held nothing; NaN where none is enough
 	Dose     float64 // what both together need, at most the largest practical dose
 	Enough   bool
+	AtLeast  bool // Dose is the least usual one; less would do
 }
 
-// Ruling names the larger of the two sizes of a dose.
+// Ruling names the larger of the two sizes of a dose, or the least dose where
+// that is larger than both.
 func (d SoakDose) Ruling() string {
+	if d.AtLeast {
+		return "the least usual dose"
+	}
 	if d.Speed > d.Capacity {
 		return "speed"
 	}
@@ -134,6 +139,9 @@ func (b *bath) exact(d SoakDose, goal, timeS float64) (SoakDose, error) {
 		return d, err
 	}
 	d.Dose, d.Enough = math.Exp(lnDose), true
+	if least := b.sorbent.MinDoseKgPerM3; d.Dose < least {
+		d.Dose, d.AtLeast = least, true
+	}
 	return d, nil
 }
 

@@ -105,7 +105,7 @@ func (b *bath) reason(goal, out, floor, timeS float64, dose SoakDose) (Stop, str
 	case math.IsNaN(goal):
 		return AtTime, fmt.Sprintf("%s after %.3g h", quantity.FormatWater(out), hours)
 	case dose.Enough:
-		return AtTarget, fmt.Sprintf("%s in %.3g h; %s rules the dose", quantity.FormatWater(goal), hours, dose.Ruling())
+		return AtTarget, fmt.Sprintf("%s in %.3g h; %s rules", quantity.FormatWater(out), hours, dose.Ruling())
 	case goal <= floor:
 		return AtFloor, fmt.Sprintf("floor: a sieve that still holds %.2g g/100 g leaves %s, whatever the dose", b.sorbent.ResidualKgPerKg*100, quantity.FormatWater(floor))
 	case b.rig.CondensationPerS > 0:

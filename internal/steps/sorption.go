@@ -28,6 +28,7 @@ type Sorbent struct {
 	HeatOfSorptionJPerMol float64 // released per mole of water from vapour; 0: unknown
 	HeatCapacityJPerKgK   float64
 	HoldUpM3PerKg         float64 // solvent kept on drained beads
+	MinDoseKgPerM3        float64 // charged even where less would do; 0: none
 	MaxDoseKgPerM3        float64
 }
 

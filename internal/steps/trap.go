@@ -23,6 +23,7 @@ type TrapRules struct {
 	VapourLossPerDay float64 // share of the charge
 	CoolingFlowM3S   float64 // flow that is really run
 	CoolingRiseK     float64
+	LongestHeatUpS   float64 // 0: no limit
 }
 
 // TrapRig is the still and its receiver.
@@ -101,10 +102,10 @@ func RunTrap(eq *TrapEquilibrium, feed Lot, goal float64, rig TrapRig, rules Tra
 // trapReach is the water a trap is run to, and why it stops there.
 func trapReach(feed, goal, floor, lowest float64) (reach float64, why Stop) {
 	reach, why = goal, AtTarget
-	if lowest > reach {
+	if lowest >= reach*(1-1e-9) {
 		reach, why = lowest, AtPractice
 	}
-	if f := floorMargin * floor; f > reach {
+	if f := floorMargin * floor; f >= reach*(1-1e-9) {
 		reach, why = f, AtFloor
 	}
 	return math.Min(reach, feed), why
@@ -121,6 +122,8 @@ type boiling struct {
 	water, solvent   float64 // mol in the pot
 	startK           float64
 	heatUpJ, boilUpJ float64
+	warmingJ         float64 // of the pot as its boiling point rises, part of boilUpJ
+	potK             float64
 	boiledMol        float64
 	boiledKg         float64
 	aqueousMol       float64 // collected
@@ -141,13 +144,13 @@ func (b *boiling) start(feed Lot) error {
 	if err != nil {
 		return err
 	}
-	b.startK = v.TempK
+	b.startK, b.potK = v.TempK, v.TempK
 	if b.startK <= b.rig.RoomK {
 		return fmt.Errorf("%w: %s boils at %.1f °C at %.4g kPa, not above the room's %.1f °C", ErrNoTrap, b.m.Solvent.Key, b.startK-273.15, b.eq.PressurePa/1e3, b.rig.RoomK-273.15)
 	}
 	mid := (b.startK + b.rig.RoomK) / 2
 	b.heatUpJ = (b.water*b.m.Water.HeatCapacityJPerMolK.At(mid) + b.solvent*b.m.Solvent.HeatCapacityJPerMolK.At(mid)) * (b.startK - b.rig.RoomK)
-	return nil
+	return checkHeater(b.heatUpJ, b.netW(), b.rules.LongestHeatUpS, (b.water+b.solvent)*b.m.MolarVolume(b.fraction(), b.rig.RoomK))
 }
 
 func (b *boiling) fraction() float64 { return b.water / (b.water + b.solvent) }
@@ -207,7 +210,10 @@ func (b *boiling) fill() error {
 		return fmt.Errorf("%w: the receiver holds %.3g L and would take the whole charge", ErrNoTrap, 1e3*b.rig.FillVolumeM3)
 	}
 	for left := total; left > 0; {
-		step := math.Min(left, math.Min(fillShare*total, fillWaterShare*b.water/v.YWater))
+		step := math.Min(left, fillShare*total)
+		if v.YWater > 0 {
+			step = math.Min(step, fillWaterShare*b.water/v.YWater)
+		}
 		if left-step < 1e-9*total {
 			step = left
 		}
@@ -222,6 +228,7 @@ func (b *boiling) fill() error {
 		if v, err = b.vapour(b.fraction()); err != nil {
 			return err
 		}
+		b.warm(v.TempK)
 		left -= step
 	}
 	b.note()
@@ -242,10 +249,14 @@ func (b *boiling) countUnreturned(step float64, v thermo.Vapour) {
 
 func (b *boiling) note() {
 	x := b.fraction()
-	b.course = append(b.course, Point{
-		Hours: (b.heatUpJ + b.boilUpJ) / b.netW() / 3600, Water: b.m.MassFraction(x),
+	p := Point{
+		Hours: (b.heatUpJ + b.boilUpJ) / b.netW() / secondsPerHour, Water: b.m.MassFraction(x),
 		BoiledKg: b.boiledKg, AqueousM3: b.aqueousM3(),
-	})
+	}
+	if v, err := b.vapour(x); err == nil {
+		p.PotK, p.HeadK = v.TempK, v.TempK
+	}
+	b.course = append(b.course, p)
 }
 
 func (b *boiling) netW() float64 { return b.rig.HeaterW * b.rig.HeatShare }
@@ -317,8 +328,23 @@ func (b *boiling) segment(x float64) error {
 	b.boilUpJ += joule
 	b.aqueousMol += (water0 - water1) / xAq
 	b.water, b.solvent = water1, rest+solventPerWater*water1
+	v, err := b.vapour(b.fraction())
+	if err != nil {
+		return err
+	}
+	b.warm(v.TempK)
 	b.note()
 	return nil
+}
+
+// warm books the sensible heat of a pot whose boiling point rises to tK as it
+// loses water.
+func (b *boiling) warm(tK float64) {
+	mid := (b.potK + tK) / 2
+	heat := (b.water*b.m.Water.HeatCapacityJPerMolK.At(mid) + b.solvent*b.m.Solvent.HeatCapacityJPerMolK.At(mid)) * (tK - b.potK)
+	b.warmingJ += heat
+	b.boilUpJ += heat
+	b.potK = tK
 }
 
 // integrate3 integrates three quantities at once by Gauss-Legendre quadrature.

@@ -35,12 +35,13 @@ func (b *boiling) outcome(feed Lot, goal float64, why Stop) Outcome {
 		Floor:         b.eq.Floor.Water,
 		Why:           why,
 		WhyText:       b.reason(goal, why),
-		HoursTotal:    (b.rules.SetUpS + n*(hotS+b.rules.ShutDownS)) / secondsPerHour,
+		HoursTotal:    (b.rules.SetUpS + n*(hotS+b.rules.ShutDownS+drainings*b.rules.DrainingS)) / secondsPerHour,
 		HoursAttended: (b.rules.SetUpS + n*(hotS*b.rules.AttendedShare+b.rules.ShutDownS+drainings*b.rules.DrainingS)) / secondsPerHour,
 		EnergyKWh:     n * b.rig.HeaterW * hotS / joulePerKWh,
-		CoolingWaterL: n * b.coolingM3(refluxS) * litrePerM3,
+		Condenser:     condense(b.rig.HeaterW, b.rig.HeatShare, b.rules.CoolingFlowM3S, b.rules.CoolingRiseK),
 		Course:        b.course,
 	}
+	o.CoolingWaterL = n * o.Condenser.RunM3PerS * refluxS * litrePerM3
 	o.Losses = []Loss{
 		{"dissolved in the aqueous layer", n * lost.aqueousSolventKg},
 		{"organic layer left in the receiver", n * lost.heldSolventKg},
@@ -94,14 +95,6 @@ func (b *boiling) losses(refluxS float64) trapLosses {
 		vapourKg:         b.solvent * solvent * vapourShare,
 		vapourWaterKg:    b.water * water * vapourShare,
 	}
-}
-
-// coolingM3 is the cooling water of one charge: the flow that is run, or more
-// where the condenser's duty at the given rise needs it.
-func (b *boiling) coolingM3(refluxS float64) float64 {
-	const heatCapacity, density = 4180.0, 998.0 // J/(kg K), kg/m3 of water at 20 °C
-	needed := b.netW() / (heatCapacity * density * b.rules.CoolingRiseK)
-	return math.Max(b.rules.CoolingFlowM3S, needed) * refluxS
 }
 
 func (b *boiling) reason(goal float64, why Stop) string {

@@ -11,6 +11,7 @@ type Kind string
 const (
 	Settle     Kind = "settle"
 	Trap       Kind = "trap"
+	Forerun    Kind = "forerun"
 	Soak       Kind = "soak"
 	Column     Kind = "column"
 	Salt       Kind = "salt"
@@ -31,16 +32,23 @@ const (
 	AtCapacity Stop = "capacity"
 	AtGrade    Stop = "grade as sold"
 	AtMeasured Stop = "measured residual"
+	AtHeel     Stop = "heel"                 // as much drawn off as may be
+	AtOneLayer Stop = "no second layer"      // the condensate no longer splits
+	AtExchange Stop = "layers change places" // the return no longer fits
 )
 
-// Lot is an amount of solvent and its water.
+// Lot is an amount of solvent, its water and what is left of a carrier.
 type Lot struct {
 	SolventKg, WaterKg float64
+	CarrierKg          float64
 	TempK              float64
 }
 
 // MassKg is the mass of the whole lot.
-func (l Lot) MassKg() float64 { return l.SolventKg + l.WaterKg }
+func (l Lot) MassKg() float64 { return l.SolventKg + l.WaterKg + l.CarrierKg }
+
+// Carrier is the mass fraction of carrier, kg/kg.
+func (l Lot) Carrier() float64 { return l.CarrierKg / l.MassKg() }
 
 // Water is the mass fraction of water, kg/kg of solution.
 func (l Lot) Water() float64 { return l.WaterKg / l.MassKg() }
@@ -105,6 +113,8 @@ type Balance struct {
 	WaterMadeKg                                 float64 // made by the solvent itself, with what went in
 	SolventAddedKg                              float64 // fresh solvent of a rinse, with what went in
 	WaterAddedKg                                float64 // and its water
+	CarrierAddedKg, CarrierOutKg                float64
+	CarrierRemovedKg                            float64
 	HeatInJ, HeatUsedJ                          float64
 }
 
@@ -114,6 +124,21 @@ type Point struct {
 	Water     float64 // kg/kg in the solvent
 	BoiledKg  float64 // trap: vapour boiled up so far
 	AqueousM3 float64 // trap: aqueous layer collected so far
+	DrawnM3   float64 // forerun: distillate drawn off so far
+	LostShare float64 // forerun: of the solvent, drawn off so far
+	Carrier   float64 // kg/kg in the pot
+	PotK      float64 // boiling temperature; 0 where the step does not boil
+	HeadK     float64 // of the vapour that reaches the condenser
+}
+
+// Condenser is what the condenser of a boiling step takes up.
+type Condenser struct {
+	DutyW        float64 // while it boils
+	HeatLossW    float64 // of the heater's power, what never reaches the liquid
+	RiseK        float64 // of the cooling water, at which NeededM3PerS suffices
+	NeededM3PerS float64
+	RunM3PerS    float64 // the flow really used
+	RunRiseK     float64 // at RunM3PerS
 }
 
 // Outcome is what a step did.
@@ -130,6 +155,10 @@ type Outcome struct {
 	EnergyKWh     float64
 	CoolingWaterL float64
 	AgentKg       float64 // agent charged
+	Carrier       string  // carrier distillation: key of the carrier
+	CarrierKg     float64 // carrier charged
+	CarrierLostKg float64 // of it, not recovered as a layer that can be used again
+	Condenser     Condenser
 	SolventLostL  float64
 	WasteKg       float64
 	Losses        []Loss

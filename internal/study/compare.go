@@ -64,8 +64,8 @@ func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog
 		Warnings: lotWarnings(k),
 	}
 	if k.Dry() {
-		l.NothingToDo = fmt.Sprintf("nothing to do: the reading of %s is at or below the %s at which a target of %s is accepted; it rests on that Karl Fischer reading of a clear sample",
-			quantity.FormatWater(lot.Water), quantity.FormatWater(k.Limit.AcceptAt), quantity.FormatWater(lot.Target))
+		l.NothingToDo = fmt.Sprintf("nothing to do: the reading of %s is at or below the %s at which a target of %s is accepted; it rests on that Karl Fischer reading of a clear sample%s",
+			quantity.FormatWater(lot.Water), quantity.FormatWater(k.Limit.AcceptAt), quantity.FormatWater(lot.Target), belowDetection(k))
 		return l, nil
 	}
 	offered, excluded := k.Candidates()
@@ -92,6 +92,13 @@ func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog
 	l.Routes, err = ranked(l.Routes, tuner)
 	sort.SliceStable(l.Excluded, func(a, b int) bool { return l.Excluded[a].ID < l.Excluded[b].ID })
 	return l, err
+}
+
+func belowDetection(k *routes.Case) string {
+	if k.Lot.Water >= k.Assay.DetectionLimit {
+		return ""
+	}
+	return fmt.Sprintf(", which lies below the detection limit of %s", quantity.FormatWater(k.Assay.DetectionLimit))
 }
 
 // carryOut runs a route with the settings given for it, or tunes it.

@@ -45,6 +45,8 @@ func provenance(r *Report, c *catalog.Catalog) ([]catalog.Source, []Weak) {
 		}
 	}
 	p.prices(r)
+	p.apparatus(r)
+	p.emissions(r)
 	return p.sources(), p.sorted()
 }
 
@@ -58,6 +60,9 @@ func appliesTo(key string, kinds map[steps.Kind]bool) bool {
 		if strings.HasPrefix(key, prefix) {
 			return kinds[kind]
 		}
+	}
+	if strings.HasPrefix(key, "still-fill") || strings.HasPrefix(key, "water-molar") {
+		return kinds[steps.Trap] || kinds[steps.Soak]
 	}
 	return strings.HasPrefix(key, "karl-fischer") || strings.HasPrefix(key, "still-rate") && kinds[steps.Soak]
 }
@@ -124,6 +129,45 @@ func (p *shelf) history(key string) {
 	for _, h := range p.catalog.Histories {
 		if h.Key == key || key == "" {
 			p.value("sieve history "+h.Text+": residual loading", h.ResidualKgPerKg)
+		}
+	}
+}
+
+// apparatus that some bill wears out or fills.
+func (p *shelf) apparatus(r *Report) {
+	for _, item := range slices.Sorted(maps.Keys(p.catalog.Apparatus)) {
+		if _, used := r.Book[item]; !used {
+			continue
+		}
+		a := p.catalog.Apparatus[item]
+		for _, f := range []struct {
+			what string
+			v    *catalog.Value
+		}{
+			{"volume", a.Volume}, {"fill volume", a.FillVolume}, {"largest fill", a.Fill}, {"power", a.Power},
+			{"load", a.Load}, {"energy of a run", a.Energy}, {"life", a.Life}, {"breakage", a.Breakage}, {"set-up", a.SetUp},
+		} {
+			if f.v != nil {
+				p.value(a.Name+": "+f.what, *f.v)
+			}
+		}
+	}
+}
+
+// emissions that enter the CO2e of some route.
+func (p *shelf) emissions(r *Report) {
+	keys := map[string]bool{"electricity": true}
+	for _, l := range r.Lots {
+		keys["making/"+l.Solvent.Key], keys["burning/"+l.Solvent.Key] = true, true
+		for _, route := range l.Routes {
+			for agent := range route.Run.AgentKg {
+				keys["making/"+agent] = true
+			}
+		}
+	}
+	for _, key := range slices.Sorted(maps.Keys(keys)) {
+		if v, ok := p.catalog.Emissions[key]; ok {
+			p.value("emission factor "+key, v)
 		}
 	}
 }

@@ -28,6 +28,12 @@ func lotWarnings(k *routes.Case) []string {
 	if band := k.Solvent.Water.SolubilityBand; band > 1.2 {
 		add("published solubilities of water in %s scatter by a factor of %.3g: trap floors share that band", k.Solvent.Name, band)
 	}
+	if p := k.Lot.Peroxide; p != nil && k.Solvent.Hazards.PeroxideClass != "none" {
+		add("the peroxide reading is of %s: test again before the lot is heated or has stood", p.Date)
+	}
+	if k.Lot.Water < k.Assay.DetectionLimit {
+		add("the start of %s lies below the detection limit of %s", quantity.FormatWater(k.Lot.Water), quantity.FormatWater(k.Assay.DetectionLimit))
+	}
 	if k.Solvent.Water.Quality != "A" {
 		add("water + %s: activity model of quality %s", k.Solvent.Name, k.Solvent.Water.Quality)
 	}
@@ -37,9 +43,6 @@ func lotWarnings(k *routes.Case) []string {
 	return w
 }
 
-// leastProvenDose is the smallest dose of the published still dryings, g/L.
-const leastProvenDose = 50
-
 // runWarnings say what a route's numbers rest on.
 func runWarnings(k *routes.Case, run routes.Run) []string {
 	var w []string
@@ -48,9 +51,7 @@ func runWarnings(k *routes.Case, run routes.Run) []string {
 		w = append(w, o.Warnings...)
 		switch o.Kind {
 		case steps.Trap:
-			if _, charges := k.Still(); charges > 1 {
-				add("the still takes the lot in %d charges", charges)
-			}
+			w = append(w, stillWarnings(k)...)
 			add("below %s a trap is taken to work at %.2g of the ideal, and its outlet is never claimed under %s (common practice, no source)",
 				quantity.FormatWater(k.Catalog.Practice["trap-efficiency-below"].SI), k.Catalog.Practice["trap-efficiency"].SI, quantity.FormatWater(k.Catalog.Practice["trap-outlet-minimum"].SI))
 		case steps.Soak:
@@ -59,15 +60,38 @@ func runWarnings(k *routes.Case, run routes.Run) []string {
 				add("%s: loading known to a factor of %.2g only", agent.Name, agent.LoadingBand)
 			}
 			add("the sieve is taken to hold %.2g g/100 g from its history; this and the mixing rate of a still vessel rule the result (fitted to few published dryings, most within a factor of 2)", k.Lot.ResidualLoading*100)
-			if dose := o.Figure("dose"); o.AgentKg > 0 && dose < leastProvenDose {
-				add("the dose of %.3g g/L is an extrapolation: the published dryings used 50 to 200 g/L", dose)
+			if k.Lot.FreeWaterM3 > 0 && len(run.Outcomes) == 1 {
+				add("free water goes over the sieve: the soak is computed as if it were dissolved, and the sieve warms; draw it off first")
 			}
 		case steps.Buy:
-			add("water of the dry grade is its limit as sold, before the bottle is opened")
+			add("water of the dry grade is its limit as sold, before the bottle is opened; the time of delivery is not counted: order in time")
 		}
 	}
 	if !finite(run.CO2eKg) {
 		add("no emission factor for part of this route: CO2e left out")
+	}
+	return w
+}
+
+// Bounds beyond which a still is an odd choice for a lot.
+const (
+	manyCharges = 10
+	leastFill   = 0.25 // of the flask; a smaller charge cannot be watched or stirred
+)
+
+func stillWarnings(k *routes.Case) []string {
+	var w []string
+	still, charges := k.Still()
+	switch fill := k.Lot.BatchM3 / float64(charges) / still.Volume.SI; {
+	case charges > manyCharges:
+		w = append(w, fmt.Sprintf("the still takes the lot in %d charges: a larger one is wanted", charges))
+	case charges > 1:
+		w = append(w, fmt.Sprintf("the still takes the lot in %d charges", charges))
+	case fill < leastFill:
+		w = append(w, fmt.Sprintf("the lot fills %.2g %% of the still's flask: a smaller one is wanted", 100*fill))
+	}
+	if p := still.Power; p != nil && p.Banded() && k.Lot.HeaterW > 2*p.High {
+		w = append(w, fmt.Sprintf("a heater of %s is more than the flask is made for (%s)", quantity.FormatPower(k.Lot.HeaterW), p.Text))
 	}
 	return w
 }

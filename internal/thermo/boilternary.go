@@ -18,31 +18,36 @@ type Boiling struct {
 // none) to start from; it only saves time.
 func (m *Ternary) Boil(x Fractions, pressurePa float64, near Boiling) (Boiling, error) {
 	x = lifted(x)
+	if near.Split.Exists {
+		if split, err := m.split(x, near.TempK, near.Split); err == nil && split.Exists {
+			if b, err := m.boilLayers(x, pressurePa, near.TempK, split); err == nil && b.Split.Exists {
+				return b, nil
+			}
+		}
+	}
 	tK, y, err := m.bubble(&x, pressurePa, near.TempK)
 	if err != nil {
 		return Boiling{}, err
 	}
-	b := Boiling{TempK: tK, Y: y}
-	split, err := m.hotSplit(x, tK, near.Split)
-	if err != nil || !split.Exists {
-		return b, err
+	split, err := m.split(x, tK, TernarySplit{})
+	if err != nil {
+		return Boiling{}, err
 	}
-	return m.boilLayers(x, pressurePa, b, split)
+	if split.Exists {
+		b, err := m.boilLayers(x, pressurePa, tK, split)
+		if err != nil || b.Split.Exists {
+			return b, err
+		}
+	}
+	return Boiling{TempK: tK, Y: y}, nil
 }
 
-// hotSplit is a split without the limits, which concern cold receivers.
-func (m *Ternary) hotSplit(x Fractions, tK float64, near TernarySplit) (TernarySplit, error) {
-	free := *m
-	free.Limits, free.SpuriousGapBelowK = nil, 0
-	return free.FlashFrom(x, tK, near)
-}
-
-// boilLayers solves for the temperature at which two layers boil together. It
-// lies below that of the unstable single liquid.
-func (m *Ternary) boilLayers(x Fractions, pressurePa float64, single Boiling, split TernarySplit) (Boiling, error) {
+// boilLayers solves for the temperature at which two layers boil together, from
+// a guess at which they exist. The result has no layers if they merge on the way.
+func (m *Ternary) boilLayers(x Fractions, pressurePa, guessK float64, split TernarySplit) (Boiling, error) {
 	var failed error
 	excess := func(t float64) float64 {
-		s, err := m.hotSplit(x, t, split)
+		s, err := m.split(x, t, split)
 		if err != nil {
 			failed = err
 			return math.NaN()
@@ -55,10 +60,10 @@ func (m *Ternary) boilLayers(x Fractions, pressurePa float64, single Boiling, sp
 		_, sum := m.partials(&liquid, t)
 		return math.Log(sum / pressurePa)
 	}
-	tK, ok := risingRoot(excess, single.TempK)
+	tK, ok := risingRoot(excess, guessK)
 	if !ok && failed == nil {
 		var err error
-		if tK, err = Brent(excess, single.TempK-80, single.TempK, 1e-8); err != nil && failed == nil {
+		if tK, err = Brent(excess, guessK-80, guessK+20, 1e-8); err != nil && failed == nil {
 			return Boiling{}, fmt.Errorf("%s at %.4g kPa: two boiling layers: %w", m.name(), pressurePa/1e3, err)
 		}
 	}
@@ -66,7 +71,7 @@ func (m *Ternary) boilLayers(x Fractions, pressurePa float64, single Boiling, sp
 		return Boiling{}, failed
 	}
 	if excess(tK); failed != nil || !split.Exists {
-		return single, failed // the layers merge just there
+		return Boiling{}, failed
 	}
 	partial, sum := m.partials(&split.Organic, tK)
 	b := Boiling{TempK: tK, Split: split}

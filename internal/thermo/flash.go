@@ -31,7 +31,9 @@ const (
 // Flash splits a liquid of overall mole fractions z at tK. Its stability is
 // tested first; the layers are refined by successive substitution, then by
 // Newton's method, and taken only if the balance closes, both layers exist,
-// they differ and their Gibbs energy lies below that of one liquid.
+// they differ and their Gibbs energy lies below that of one liquid. The split is
+// sought from outside, from a dry and a watery layer: several sets show a false
+// liquid between the two, on which a search from within may end.
 func (m *Ternary) Flash(z Fractions, tK float64) (TernarySplit, error) {
 	return m.FlashFrom(z, tK, TernarySplit{})
 }
@@ -42,25 +44,74 @@ func (m *Ternary) FlashFrom(z Fractions, tK float64, guess TernarySplit) (Ternar
 	if err := m.CheckTemperature(tK); err != nil {
 		return TernarySplit{}, err
 	}
+	s, err := m.split(z, tK, guess)
+	if err != nil {
+		err = fmt.Errorf("%s at %.2f K: %w", m.name(), tK, err)
+	}
+	return s, err
+}
+
+// split is FlashFrom without the limits, which concern cold layers.
+func (m *Ternary) split(z Fractions, tK float64, guess TernarySplit) (TernarySplit, error) {
 	z = lifted(z)
 	l := m.at(tK)
+	search := splitSearch{liquid: &l, z: z}
 	if guess.Exists {
-		if s, err := l.refine(&z, lnRatio(&guess.Aqueous, &guess.Organic)); err == nil && s.Exists {
-			return s, nil
+		search.try(&guess.Aqueous, &guess.Organic)
+		if search.best.Exists {
+			return search.best, nil
 		}
 	}
 	starts := l.unstable(&z)
-	var failed error
-	for _, trial := range starts.found[:starts.n] {
-		s, err := l.refine(&z, lnRatio(&trial, &z))
-		if err == nil && s.Exists {
-			return s, nil
-		}
-		if err != nil {
-			failed = fmt.Errorf("%s at %.2f K: %w", m.name(), tK, err)
-		}
+	if starts.n == 0 {
+		return TernarySplit{}, nil
 	}
-	return TernarySplit{}, failed
+	dry, watery := outside(&z)
+	if search.try(&watery, &dry) {
+		return search.best, nil
+	}
+	for i := range starts.n {
+		search.try(&starts.found[i], &z)
+	}
+	if !search.best.Exists {
+		return TernarySplit{}, search.failed
+	}
+	return search.best, nil
+}
+
+// outside are a layer without water and one that is nearly all water.
+func outside(z *Fractions) (dry, watery Fractions) {
+	dry, watery = *z, *z
+	dry[InWater] *= 0.01
+	watery[InSolvent] *= 0.05
+	watery[InCarrier] *= 0.001
+	return lifted(dry), lifted(watery)
+}
+
+// splitSearch keeps the split of lowest Gibbs energy.
+type splitSearch struct {
+	*liquid
+	z      Fractions
+	best   TernarySplit
+	energy float64
+	failed error
+}
+
+// try refines a split from the ratios of two trial layers.
+func (s *splitSearch) try(a, b *Fractions) (better bool) {
+	found, err := s.refine(&s.z, lnRatio(a, b))
+	if err != nil {
+		s.failed = err
+	}
+	if err != nil || !found.Exists {
+		return false
+	}
+	energy := (1-found.AqueousShare)*s.gibbs(&found.Organic) + found.AqueousShare*s.gibbs(&found.Aqueous)
+	if s.best.Exists && energy > s.energy-1e-12 {
+		return false
+	}
+	s.best, s.energy = found, energy
+	return true
 }
 
 // lifted gives a missing component a trace and makes the fractions sum to one.
@@ -84,12 +135,11 @@ func lnRatio(a, b *Fractions) (ln Fractions) {
 }
 
 // Iterations of the flash: successive substitution alone at first, then Newton
-// steps, each replaced by a substitution where it does not lower both the
-// residual and the Gibbs energy. Substitution lowers the energy by itself, but
-// slowly where the energy is flat.
+// steps, each replaced by a substitution where it finds no way down.
 const (
-	flashSubstitutions = 8
-	flashIterations    = 600
+	flashSubstitutions = 5
+	flashIterations    = 200
+	flashNear          = 0.05 // residual below which Newton's method starts at once
 	flashTolerance     = 1e-10
 )
 
@@ -105,8 +155,8 @@ func (l *liquid) refine(z *Fractions, lnK Fractions) (TernarySplit, error) {
 			return TernarySplit{}, nil // both layers have become the feed
 		}
 		next, better := partition{}, false
-		if i >= flashSubstitutions {
-			next, better = l.newton(z, &p)
+		if i >= flashSubstitutions || p.size < flashNear {
+			next, better = l.newton(z, &p, i > flashSubstitutions+6)
 		}
 		if !better {
 			if next, ok = l.layersOf(z, minus(&p.lnK, &p.residual)); !ok {
@@ -141,11 +191,7 @@ func (l *liquid) layersOf(z *Fractions, lnK Fractions) (p partition, ok bool) {
 		p.first[i] = z[i] / (1 + p.share*(k[i]-1))
 		p.second[i] = k[i] * p.first[i]
 	}
-	a, b := l.lnGamma(&p.first), l.lnGamma(&p.second)
-	for i := range z {
-		p.residual[i] = lnK[i] - (a[i] - b[i])
-	}
-	p.size = largest(&p.residual)
+	l.compare(&p)
 	return p, !math.IsNaN(p.size)
 }
 
@@ -183,36 +229,97 @@ func rachfordRice(z, k *Fractions) (beta float64, ok bool) {
 	return beta, true
 }
 
-// newton takes one step on the residual with a Jacobian by differences; better
-// is false where the step does not reduce the residual.
-func (l *liquid) newton(z *Fractions, p *partition) (next partition, better bool) {
-	const h, longest = 1e-6, 1.5
-	var jacobian square
-	for j := range p.lnK {
-		moved := p.lnK
-		moved[j] += h
-		q, ok := l.layersOf(z, moved)
-		if !ok {
-			return next, false
-		}
-		for i := range p.residual {
-			jacobian[i][j] = (q.residual[i] - p.residual[i]) / h
-		}
+// newton takes one step down the Gibbs energy with the amounts v_i in the second
+// layer as unknowns; its gradient is the residual. The Hessian, by differences
+// and scaled by the amounts, is damped until it is positive definite and the
+// step lowers the energy (Levenberg's rule). ok is false where no step does.
+// central asks for the finer differences that a plait point needs.
+func (l *liquid) newton(z *Fractions, p *partition, central bool) (next partition, ok bool) {
+	if !(p.share > 0 && p.share < 1) {
+		return next, false
 	}
-	step, ok := solve3(jacobian, p.residual)
+	var amount, scale, slope Fractions
+	for i := range z {
+		amount[i] = p.share * p.second[i]
+		scale[i] = math.Sqrt(amount[i] * (z[i] - amount[i]) / z[i])
+		slope[i] = scale[i] * p.residual[i]
+	}
+	hessian, ok := l.curvature(z, p, &amount, &scale, central)
 	if !ok {
 		return next, false
 	}
-	if s := largest(&step); s > longest {
-		for i := range step {
-			step[i] *= longest / s
+	energy := l.together(p)
+	for damping := 0.0; damping < 1e6; damping = math.Max(1e-8, 10*damping) {
+		step, definite := solveDefinite(hessian, damping, slope)
+		if !definite {
+			continue
+		}
+		moved := amount
+		for i := range moved {
+			moved[i] -= scale[i] * step[i]
+		}
+		if next, ok = l.partitionOf(z, &moved); !ok {
+			continue
+		}
+		if gain := energy - l.together(&next); gain > 0 || (gain > -1e-13 && next.size < 0.5*p.size) {
+			return next, true
 		}
 	}
-	next, ok = l.layersOf(z, minus(&p.lnK, &step))
-	if !ok || !(next.size < 0.9*p.size) || !(next.share > 0 && next.share < 1) {
-		return next, false
+	return next, false
+}
+
+// curvature is the Hessian of the Gibbs energy in scaled amounts. Near a plait
+// point its least eigenvalue is very small, so that only central differences do.
+func (l *liquid) curvature(z *Fractions, p *partition, amount, scale *Fractions, central bool) (hessian square, ok bool) {
+	h, down := 1e-6, *p
+	if central {
+		h = 1e-4
 	}
-	return next, p.size < 1e-4 || l.together(&next) < l.together(p)
+	for j := range amount {
+		shift := h * math.Min(amount[j], z[j]-amount[j])
+		moved := *amount
+		moved[j] += shift
+		width := shift
+		up, ok := l.partitionOf(z, &moved)
+		if ok && central {
+			moved[j] = amount[j] - shift
+			width = 2 * shift
+			down, ok = l.partitionOf(z, &moved)
+		}
+		if !ok || shift == 0 {
+			return hessian, false
+		}
+		for i := range amount {
+			hessian[i][j] = scale[i] * scale[j] * (up.residual[i] - down.residual[i]) / width
+		}
+	}
+	return hessian, true
+}
+
+// partitionOf evaluates a split given the amounts in the second layer.
+func (l *liquid) partitionOf(z, amount *Fractions) (p partition, ok bool) {
+	for i := range amount {
+		if !(amount[i] > 0 && amount[i] < z[i]) {
+			return p, false
+		}
+		p.share += amount[i]
+	}
+	for i := range amount {
+		p.second[i] = amount[i] / p.share
+		p.first[i] = (z[i] - amount[i]) / (1 - p.share)
+		p.lnK[i] = math.Log(p.second[i] / p.first[i])
+	}
+	l.compare(&p)
+	return p, !math.IsNaN(p.size)
+}
+
+// compare fills in how far the activities of both layers are apart.
+func (l *liquid) compare(p *partition) {
+	a, b := l.lnGamma(&p.first), l.lnGamma(&p.second)
+	for i := range p.lnK {
+		p.residual[i] = p.lnK[i] - (a[i] - b[i])
+	}
+	p.size = largest(&p.residual)
 }
 
 // together is the Gibbs energy of mixing of both layers over RT, per mole of feed.
@@ -257,34 +364,41 @@ func minus(a, b *Fractions) (d Fractions) {
 	return d
 }
 
-// solve3 solves three linear equations by elimination with row exchange.
-func solve3(a square, b Fractions) (x Fractions, ok bool) {
-	for c := range a {
-		pivot := c
-		for r := c + 1; r < len(a); r++ {
-			if math.Abs(a[r][c]) > math.Abs(a[pivot][c]) {
-				pivot = r
+// solveDefinite solves (a + damping) x = b for a symmetric matrix by Cholesky's
+// factors; definite is false where the damped matrix is not positive definite.
+func solveDefinite(a square, damping float64, b Fractions) (x Fractions, definite bool) {
+	var c square
+	for i := range a {
+		for j := 0; j <= i; j++ {
+			sum := (a[i][j] + a[j][i]) / 2
+			if i == j {
+				sum += damping
 			}
-		}
-		a[c], a[pivot] = a[pivot], a[c]
-		b[c], b[pivot] = b[pivot], b[c]
-		if !(math.Abs(a[c][c]) > 1e-14) {
-			return x, false
-		}
-		for r := c + 1; r < len(a); r++ {
-			f := a[r][c] / a[c][c]
-			for k := c; k < len(a); k++ {
-				a[r][k] -= f * a[c][k]
+			for k := range j {
+				sum -= c[i][k] * c[j][k]
 			}
-			b[r] -= f * b[c]
+			if i != j {
+				c[i][j] = sum / c[j][j]
+				continue
+			}
+			if !(sum > 1e-12) {
+				return x, false
+			}
+			c[i][i] = math.Sqrt(sum)
 		}
 	}
-	for c := len(a) - 1; c >= 0; c-- {
-		x[c] = b[c]
-		for k := c + 1; k < len(a); k++ {
-			x[c] -= a[c][k] * x[k]
+	for i := range x {
+		x[i] = b[i]
+		for k := range i {
+			x[i] -= c[i][k] * x[k]
 		}
-		x[c] /= a[c][c]
+		x[i] /= c[i][i]
+	}
+	for i := len(x) - 1; i >= 0; i-- {
+		for k := i + 1; k < len(x); k++ {
+			x[i] -= c[k][i] * x[k]
+		}
+		x[i] /= c[i][i]
 	}
 	return x, true
 }

@@ -21,6 +21,9 @@ const smallestMoleFraction = 1e-9
 // TrapFloor solves y_w(x_pot, T_b) = x_w,sat(T_rec) for the pot. A receiver that
 // gives no layers has no floor; Reason says why.
 func (m *Mixture) TrapFloor(receiverK, pressurePa float64) (Floor, error) {
+	if err := m.CheckPressure(pressurePa); err != nil {
+		return Floor{Return: None, Reason: err.Error(), XPot: math.NaN(), Water: math.NaN(), PotK: math.NaN()}, nil
+	}
 	layers, err := m.LayersAt(receiverK)
 	if err != nil || layers.Return == None {
 		return Floor{Return: None, Reason: layers.Reason, XPot: math.NaN(), Water: math.NaN(), PotK: math.NaN(), Layers: layers}, err
@@ -29,9 +32,13 @@ func (m *Mixture) TrapFloor(receiverK, pressurePa float64) (Floor, error) {
 	if err != nil {
 		return Floor{}, err
 	}
-	if receiverK >= dryBoil {
-		return Floor{}, fmt.Errorf("the receiver at %.1f °C is not below the boiling point of %s, %.1f °C at %.4g kPa",
-			receiverK-273.15, m.Solvent.Key, dryBoil-273.15, pressurePa/1e3)
+	wet, err := m.BubbleFrom(layers.XOrganic, pressurePa, dryBoil)
+	if err != nil {
+		return Floor{}, err
+	}
+	if receiverK >= wet.TempK {
+		return Floor{}, fmt.Errorf("the receiver at %.1f °C is not below %.1f °C, where wet %s boils at %.4g kPa",
+			receiverK-273.15, wet.TempK-273.15, m.Solvent.Key, pressurePa/1e3)
 	}
 	var failed error
 	guess := dryBoil

@@ -43,6 +43,19 @@ func (m *Mixture) gibbs(x, tK float64) float64 {
 // hullGap returns the ends of the widest edge of the lower convex hull that
 // skips at least one point.
 func (m *Mixture) hullGap(tK float64) (left, right float64, found bool) {
+	hull := m.hull(tK)
+	widest := 1
+	for k := 1; k < len(hull); k++ {
+		if skipped := hull[k] - hull[k-1]; skipped > widest {
+			widest, left, right, found = skipped, hullPoints[hull[k-1]], hullPoints[hull[k]], true
+		}
+	}
+	return left, right, found
+}
+
+// hull returns the points of the grid that lie on the lower convex hull of the
+// Gibbs energy of mixing.
+func (m *Mixture) hull(tK float64) []int {
 	n := len(hullPoints)
 	g := make([]float64, n)
 	for i, x := range hullPoints {
@@ -55,13 +68,7 @@ func (m *Mixture) hullGap(tK float64) (left, right float64, found bool) {
 		}
 		hull = append(hull, i)
 	}
-	widest := 1
-	for k := 1; k < len(hull); k++ {
-		if skipped := hull[k] - hull[k-1]; skipped > widest {
-			widest, left, right, found = skipped, hullPoints[hull[k-1]], hullPoints[hull[k]], true
-		}
-	}
-	return left, right, found
+	return hull
 }
 
 func aboveChord(g []float64, a, b, c int) bool {

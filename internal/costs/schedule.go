@@ -1,0 +1,145 @@
+package costs
+
+import (
+	"fmt"
+	"math"
+	"slices"
+
+	"parch/catalog"
+)
+
+// mostDeliveries a year of one pack: more often nobody orders.
+const mostDeliveries = 12
+
+// schedule sets the days on which the packs must be there and, by the lead time,
+// be ordered. Large packs come first; each delivery is due on the day when what
+// was there before falls to the safety stock, the first batch on day 0. Days
+// before the first batch are negative until the list is counted from its earliest
+// order.
+func (one *Purchase) schedule(n Need, perDay float64) {
+	covered := one.Have - one.Safety // what use may take before the next delivery
+	first := covered < min(n.AtOnce, n.Year())*(1-1e-9)
+	one.Peak = one.Have
+	for i := range one.Orders {
+		o := &one.Orders[i]
+		size := o.Amount.InexactFloat64() / float64(o.Count)
+		o.Each = max(o.Pack.Minimum, (o.Count+mostDeliveries-1)/mostDeliveries, 1)
+		if first { // enough for the first batch
+			o.Each = max(o.Each, int(math.Ceil((min(n.AtOnce, n.Year())-covered)/size-1e-9)))
+		}
+		if o.Each = min(o.Each, o.Count); one.Unit == "each" {
+			o.Each = o.Count
+		}
+		deliveries := (o.Count + o.Each - 1) / o.Each
+		o.NeedDay = dayWhen(covered, perDay)
+		if first {
+			o.NeedDay = 0
+			first = false
+		}
+		o.OrderDay = o.NeedDay - max(o.Pack.LeadDays, 0)
+		if deliveries > 1 {
+			o.Every = max(1, int(float64(o.Each)*size/perDay))
+		}
+		stock := max(one.Safety, one.Have-perDay*float64(o.NeedDay)) // when the first arrives
+		one.Peak = max(one.Peak, stock+float64(o.Each)*size)
+		covered += float64(o.Count) * size
+	}
+}
+
+func dayWhen(covered, perDay float64) int {
+	if covered <= 0 || perDay <= 0 {
+		return 0
+	}
+	return int(math.Min(math.Floor(covered/perDay), 10*daysPerYear))
+}
+
+// fromFirstOrder counts the days from the earliest order.
+func (b *Buying) fromFirstOrder() {
+	earliest := 0
+	for _, p := range b.Purchases {
+		for _, o := range p.Orders {
+			earliest = min(earliest, o.OrderDay)
+		}
+	}
+	b.FirstBatchDay = -earliest
+	for _, p := range b.Purchases {
+		for i := range p.Orders {
+			p.Orders[i].OrderDay -= earliest
+			p.Orders[i].NeedDay -= earliest
+		}
+	}
+}
+
+// storable leaves out packs whose smallest order alone passes the limit of the
+// site for the item, unless there is no other.
+func (p *purchaser) storable(one *Purchase, packs []Pack) (fit []Pack, left string) {
+	limit, ok := p.itemLimit(one)
+	if !ok {
+		return packs, ""
+	}
+	fit = slices.DeleteFunc(slices.Clone(packs), func(pack Pack) bool {
+		return pack.smallestOrder().InexactFloat64() > limit*(1+1e-9)
+	})
+	switch {
+	case len(fit) == 0:
+		return packs, ""
+	case len(fit) < len(packs):
+		return fit, fmt.Sprintf("; packs over the site's limit of %.4g %s are left out", limit, unitSymbol(one.Unit))
+	}
+	return packs, ""
+}
+
+// itemLimit is the site's limit for an item, in the unit of its price.
+func (p *purchaser) itemLimit(one *Purchase) (limit float64, ok bool) {
+	for _, s := range p.job.Storage {
+		if s.Item != one.Item || one.KgPerUnit == 0 {
+			continue
+		}
+		if s.M3 > 0 && one.Unit == "litre" {
+			return s.M3 * 1e3, true
+		}
+		if s.Kg > 0 {
+			return s.Kg / one.KgPerUnit, true
+		}
+	}
+	return 0, false
+}
+
+// storageFlags compares what is in store at most, if all items are at their most
+// together, with the limits of the site.
+func (p *purchaser) storageFlags(all []Purchase) []string {
+	var flags []string
+	for _, limit := range p.job.Storage {
+		kg, litres, volume := 0.0, 0.0, true
+		for i := range all {
+			one := &all[i]
+			if one.Item != limit.Item && !p.inClass(one.Item, limit.Class) || one.KgPerUnit == 0 {
+				continue
+			}
+			kg += one.Peak * one.KgPerUnit
+			litres += one.Peak
+			volume = volume && one.Unit == "litre"
+		}
+		what := limit.Item + limit.Class
+		const note = "lots that wait and waste come on top; the site's limit and the local fire code decide"
+		switch {
+		case limit.M3 > 0 && !volume:
+			flags = append(flags, fmt.Sprintf("%s: the limit is a volume, but some of it is weighed; give the limit in kg", what))
+		case limit.M3 > 0 && litres > limit.M3*1e3*(1+1e-9):
+			flags = append(flags, fmt.Sprintf("%s: up to %.4g L in store at once, the limit is %.4g L: order less at a time; %s", what, litres, limit.M3*1e3, note))
+		case limit.Kg > 0 && kg > limit.Kg*(1+1e-9):
+			flags = append(flags, fmt.Sprintf("%s: up to %.4g kg in store at once, the limit is %.4g kg: order less at a time; %s", what, kg, limit.Kg, note))
+		}
+	}
+	return flags
+}
+
+// inClass tells whether an item counts towards a class of the site's limits.
+func (p *purchaser) inClass(item, class string) bool {
+	var s *catalog.Solvent
+	if s = p.cat.Solvents[solventOf(item)]; s != nil {
+		return class == "flammable" && s.FlashPoint != nil || class == "halogenated" && s.Hazards.Halogenated
+	}
+	a := p.cat.Agents[item]
+	return a != nil && class == "reactive" && a.Kind == "reactive"
+}

@@ -1,0 +1,121 @@
+package steps
+
+import (
+	"fmt"
+	"math"
+
+	"parch/internal/quantity"
+)
+
+// outcome turns one charge into the whole lot's account.
+func (r *refluxing) outcome(feed Lot) Outcome {
+	n := float64(r.rig.Charges)
+	heatUpS := r.heatUpJ / r.netW()
+	trapS := r.trapped.heatJ / r.netW()
+	refluxS := math.Max(trapS, r.rules.ShortestRefluxS)
+	stripS := (r.s.heatJ - r.trapped.heatJ) / r.netW()
+	hotS := heatUpS + refluxS + stripS
+	drainings := math.Max(1, math.Ceil(r.aqueousM3()/r.rig.UsableVolumeM3-1e-9))
+	o := Outcome{
+		Kind: Trap, In: feed, Floor: math.NaN(),
+		Carrier: r.m.Pure[carrier].Key, CarrierKg: r.plan.DoseKg,
+		Why: r.why, WhyText: r.reached(),
+		HoursTotal:    (r.rules.SetUpS + n*(hotS+r.rules.ShutDownS)) / secondsPerHour,
+		HoursAttended: (r.rules.SetUpS + n*(hotS*r.rules.AttendedShare+r.rules.ShutDownS+drainings*r.rules.DrainingS)) / secondsPerHour,
+		EnergyKWh:     n * r.rig.HeaterW * hotS / joulePerKWh,
+		Condenser:     condense(r.rig.HeaterW, r.rig.HeatShare, r.rules.CoolingFlowM3S, r.rules.CoolingRiseK),
+		Course:        r.course, Warnings: r.warnings,
+	}
+	if r.why == AtFloor {
+		o.Floor = r.dryness(&r.trapped)
+	}
+	o.CoolingWaterL = n * o.Condenser.RunM3PerS * (refluxS + stripS) * litrePerM3
+	r.share(&o, n, (refluxS+stripS)/secondsPerDay*r.rules.VapourLossPerDay)
+	o.account(r.m.Pure[solvent], r.rig.RoomK)
+	o.Balance.CarrierAddedKg, o.Balance.CarrierOutKg = r.plan.DoseKg, o.Out.CarrierKg
+	o.Balance.HeatInJ = n * r.netW() * hotS
+	o.Balance.HeatUsedJ = n * (r.heatUpJ + r.s.heatJ + r.netW()*(refluxS-trapS))
+	r.figures(&o, heatUpS, refluxS, stripS, drainings)
+	r.warn(&o)
+	return o
+}
+
+// share parts lot and dose into product, layers, strippings and vapour past the
+// condenser, which is taken to be like the pot.
+func (r *refluxing) share(o *Outcome, n, vapourShare float64) {
+	kg := func(amounts Fractions, component int) float64 { return n * r.kg(amounts[component], component) }
+	pot := r.s.pot
+	vapour := scaled(pot, vapourShare)
+	keep := scaled(pot, 1-vapourShare)
+	o.Out = Lot{SolventKg: kg(keep, solvent), WaterKg: kg(keep, water), CarrierKg: kg(keep, carrier), TempK: r.rig.RoomK}
+	regained := 0.0
+	if lowest := r.rules.LowestOutlet / (1 - r.rules.LowestOutlet) * (o.Out.SolventKg + o.Out.CarrierKg); o.Out.WaterKg < math.Min(lowest, o.In.WaterKg) {
+		regained = math.Min(lowest, o.In.WaterKg) - o.Out.WaterKg
+		o.Out.WaterKg += regained
+	}
+	o.Losses = []Loss{
+		{"dissolved in the aqueous layer", kg(r.s.aqueous, solvent)},
+		{"organic layer left in the receiver", kg(r.s.held, solvent)},
+		{"stripped off with the carrier", kg(r.s.drawn, solvent)},
+		{"vapour past the condenser", kg(vapour, solvent)},
+	}
+	o.Discards = []Discard{
+		{AqueousWaste, "aqueous layer", n * r.massKg(r.s.aqueous)},
+		{SolventWaste, "organic layer left in the receiver", n * r.massKg(r.s.held)},
+		{SolventWaste, "carrier and solvent stripped off", n * r.massKg(r.s.drawn)},
+	}
+	var gone [3]float64
+	for i := range gone {
+		gone[i] = kg(r.s.aqueous, i) + kg(r.s.held, i) + kg(r.s.drawn, i) + kg(vapour, i)
+	}
+	o.Balance.WaterRemovedKg = gone[water] - regained
+	o.Balance.CarrierRemovedKg = gone[carrier]
+	o.CarrierLostKg = gone[carrier]
+}
+
+func (r *refluxing) figures(o *Outcome, heatUpS, refluxS, stripS, drainings float64) {
+	a := r.eq.Azeotrope
+	o.Figures = []Figure{
+		{"still charges", "", float64(r.rig.Charges)},
+		{"carrier charged", "kg", r.plan.DoseKg},
+		{"boiling temperature at the start", "°C", r.startK - 273.15},
+		{"boiling temperature at the end", "°C", r.near[0].TempK - 273.15},
+		{"lowest-boiling mixture", "°C", a.TempK - 273.15},
+		{"heat-up, each charge", "h", heatUpS / secondsPerHour},
+		{"reflux, each charge", "h", refluxS / secondsPerHour},
+		{"stripping, each charge", "h", stripS / secondsPerHour},
+		{"vapour boiled up, each charge", "kg", r.s.boiledKg},
+		{"aqueous layer, each charge", "mL", r.aqueousM3() * 1e6},
+		{"drainings, each charge", "", drainings},
+		{"water in the pot when the trap stops", "mg/kg", r.dryness(&r.trapped) * mgPerKg},
+		{"carrier left in the product", "mg/kg", o.Out.Carrier() * mgPerKg},
+		{"carrier in the aqueous layer", "kg", float64(r.rig.Charges) * r.kg(r.s.aqueous[carrier], carrier)},
+		{"stripped off, each charge", "L", r.liquidM3(r.s.drawn, r.rig.RoomK) * litrePerM3},
+		{"band on the water of the organic layer", "factor", math.Max(1, r.widestBand)},
+	}
+}
+
+func (r *refluxing) warn(o *Outcome) {
+	o.Warnings = append(o.Warnings, fmt.Sprintf("the product holds %s of %s", quantity.FormatWater(o.Out.Carrier()), r.m.Pure[carrier].Key))
+	if r.stripWhy == AtHeel {
+		o.Warnings = append(o.Warnings, fmt.Sprintf("stripping ends at the heel with %s of %s left, above the limit of %s",
+			quantity.FormatWater(o.Out.Carrier()), r.m.Pure[carrier].Key, quantity.FormatWater(r.plan.CarrierLimit)))
+	}
+	if r.widestBand > 1 {
+		o.Warnings = append(o.Warnings, fmt.Sprintf("water in the organic layer rests on %s: within a factor %.2g either way", r.bandBasis, r.widestBand))
+	}
+	if lost := o.Losses[2].SolventKg / o.In.SolventKg; lost > wastefulShare {
+		o.Warnings = append(o.Warnings, fmt.Sprintf("%.0f %% of the solvent is stripped off with the carrier", 100*lost))
+	}
+}
+
+// reached words the reason for stopping.
+func (r *refluxing) reached() string {
+	if r.whyText != "" {
+		return r.whyText
+	}
+	if r.why == AtPractice {
+		return fmt.Sprintf("practical limit: droplets and moist air keep a trap's outlet at %s or more", quantity.FormatWater(r.rules.LowestOutlet))
+	}
+	return fmt.Sprintf("hand-over at %s reached", quantity.FormatWater(r.plan.Goal))
+}

@@ -1,0 +1,253 @@
+package steps
+
+import (
+	"errors"
+	"fmt"
+	"math"
+
+	"parch/internal/quantity"
+	"parch/internal/thermo"
+)
+
+// ErrNoForerun means that drawing off without return cannot dry the mixture; the
+// error says why.
+var ErrNoForerun = errors.New("a forerun does not work here")
+
+// ErrHeater means that the heater is too weak for the charge.
+var ErrHeater = errors.New("the heater is too weak")
+
+// LeastHeel is the share of a charge that always stays in the pot: a still is
+// never boiled dry.
+const LeastHeel = 0.10
+
+// MostStages is the tallest column that is modelled.
+const MostStages = 20
+
+// ForerunRig is a still that returns no condensate from its receiver.
+type ForerunRig struct {
+	HeaterW     float64
+	HeatShare   float64 // of the heater's power that reaches the liquid
+	RoomK       float64
+	CoolantK    float64 // 0: not checked
+	Charges     int
+	Stages      int     // equilibrium stages of the column above the pot; 0 is a simple still
+	RefluxRatio float64 // moles returned to the column per mole drawn off; 0 for a simple still
+	HighestPotK float64 // 0: no limit
+}
+
+// ForerunRules are the practical sides of drawing off.
+type ForerunRules struct {
+	HeelShare        float64 // of the charge that stays in the pot, at least LeastHeel
+	LowestOutlet     float64 // kg/kg, an outlet is never claimed below it
+	SetUpS           float64
+	SettleColumnS    float64 // at total reflux before anything is drawn off; only with a column
+	AttendedShare    float64 // of the hours at the heater
+	ShutDownS        float64 // cool and transfer, each charge
+	VapourLossPerDay float64 // share of the charge
+	CoolingFlowM3S   float64
+	CoolingRiseK     float64
+	LongestHeatUpS   float64 // 0: no limit
+	StepError        float64 // of ln N allowed in each step; 0: the default
+}
+
+// ForerunEquilibrium is the boiling of water and a solvent at one pressure.
+type ForerunEquilibrium struct {
+	Mixture    *thermo.Mixture
+	PressurePa float64
+	Azeotrope  thermo.Azeotrope
+	DryK       float64 // boiling point of the dry solvent
+}
+
+// NewForerunEquilibrium solves for the azeotrope, or says why the model does not apply.
+func NewForerunEquilibrium(m *thermo.Mixture, pressurePa float64) (*ForerunEquilibrium, error) {
+	if err := m.CheckPressure(pressurePa); err != nil {
+		return nil, fmt.Errorf("%w: %w", ErrNoForerun, err)
+	}
+	dryK, err := thermo.Boil(m.Solvent, pressurePa)
+	if err != nil {
+		return nil, err
+	}
+	az, err := m.FindAzeotrope(pressurePa)
+	if err != nil {
+		return nil, err
+	}
+	return &ForerunEquilibrium{m, pressurePa, az, dryK}, nil
+}
+
+// vapour over a liquid of overall water fraction x, as one liquid or two.
+func (eq *ForerunEquilibrium) vapour(x, guessK float64) (thermo.Vapour, error) {
+	if a := eq.Azeotrope; a.Kind == thermo.Heterogeneous && x > a.Layers.XOrganic && x < a.Layers.XAqueous {
+		return thermo.Vapour{TempK: a.TempK, YWater: a.YWater}, nil
+	}
+	return eq.Mixture.BubbleFrom(x, eq.PressurePa, guessK)
+}
+
+// climb is the vapour of a pot and the vapour that leaves the column above it.
+// At total reflux the liquid that falls from a stage is as wet as the vapour that
+// rises to it:
+//
+//	x_(k+1) = y_k,  y_0 = y(x_pot)
+//
+// A finite reflux ratio parts less sharply, so the result is the best a column of
+// so many stages can do.
+func (eq *ForerunEquilibrium) climb(x float64, stages int, guessK float64) (pot, head thermo.Vapour, err error) {
+	if pot, err = eq.vapour(x, guessK); err != nil {
+		return pot, pot, err
+	}
+	head = pot
+	for range stages {
+		before := head.YWater
+		if head, err = eq.vapour(head.YWater, head.TempK); err != nil {
+			return pot, head, err
+		}
+		if math.Abs(head.YWater-before) < 1e-14 {
+			break // pinched at the azeotrope
+		}
+	}
+	return pot, head, nil
+}
+
+// RunForerun draws distillate off a lot until goal (kg/kg) or the heel is
+// reached. Where water is the more volatile, or leaves with the azeotrope, the
+// dry solvent stays in the pot and the distillate is lost; where the solvent is
+// the more volatile, the distillate is the product and a wet heel stays behind.
+//
+//	dN_w/dN = y_w,  so  d ln N/dx = 1/(y - x)   (Rayleigh, Phil. Mag. 4 (1902) 521)
+func RunForerun(eq *ForerunEquilibrium, feed Lot, goal float64, rig ForerunRig, rules ForerunRules) (Outcome, error) {
+	d := drawing{eq: eq, m: eq.Mixture, rig: rig, rules: rules, allowedError: rules.StepError}
+	if d.allowedError <= 0 {
+		d.allowedError = defaultDrawingError
+	}
+	if err := d.check(feed); err != nil {
+		return Outcome{}, err
+	}
+	if err := d.start(feed); err != nil {
+		return Outcome{}, err
+	}
+	goal = math.Max(goal, rules.LowestOutlet)
+	var err error
+	if d.overhead {
+		err = d.collect(goal)
+	} else {
+		err = d.strip(goal)
+	}
+	if err != nil {
+		return Outcome{}, err
+	}
+	return d.outcome(feed, goal), nil
+}
+
+// drawing is one charge under distillation.
+type drawing struct {
+	eq    *ForerunEquilibrium
+	m     *thermo.Mixture
+	rig   ForerunRig
+	rules ForerunRules
+
+	mol0, x0 float64 // charge and its water fraction
+	overhead bool    // the distillate is the product
+	tempK    float64 // of the feed
+	startK   float64
+	heatUpJ  float64
+
+	at           point
+	lnLeft       float64 // ln(moles in the pot/moles charged)
+	boilUpJ      float64
+	why          Stop
+	firstY       float64 // water fraction of the first distillate
+	course       []Point
+	allowedError float64 // of ln N, each step
+}
+
+func (d *drawing) check(feed Lot) error {
+	r := d.rig
+	switch {
+	case r.Stages < 0 || r.Stages > MostStages:
+		return fmt.Errorf("%w: %d stages; allowed are 0 to %d", ErrNoForerun, r.Stages, MostStages)
+	case d.rules.HeelShare < LeastHeel || d.rules.HeelShare >= 1:
+		return fmt.Errorf("%w: a heel of %.3g %%; at least %.0f %% of the charge stays in the pot", ErrNoForerun, 100*d.rules.HeelShare, 100*LeastHeel)
+	case r.Charges < 1:
+		return fmt.Errorf("%w: %d still charges", ErrNoForerun, r.Charges)
+	case r.RefluxRatio < 0 || (r.Stages > 0 && r.RefluxRatio == 0):
+		return fmt.Errorf("%w: a column of %d stages needs a reflux ratio above 0", ErrNoForerun, r.Stages)
+	case !(feed.WaterKg > 0 && feed.SolventKg > 0):
+		return fmt.Errorf("%w: the lot holds %.3g kg of water and %.3g kg of solvent", ErrNoForerun, feed.WaterKg, feed.SolventKg)
+	}
+	return nil
+}
+
+// start brings the charge to the boil and finds out which way it dries.
+func (d *drawing) start(feed Lot) error {
+	charges := float64(d.rig.Charges)
+	water := feed.WaterKg / charges / d.m.Water.MolarMassKgPerMol
+	solvent := feed.SolventKg / charges / d.m.Solvent.MolarMassKgPerMol
+	d.mol0, d.x0 = water+solvent, water/(water+solvent)
+	var err error
+	if d.at, err = d.sample(logit(d.x0)); err != nil {
+		return err
+	}
+	d.startK, d.firstY = d.at.potK, d.at.y
+	d.tempK = feed.TempK
+	if d.tempK == 0 {
+		d.tempK = d.rig.RoomK
+	}
+	if err := d.checkTemperatures(); err != nil {
+		return err
+	}
+	if d.startK > d.tempK {
+		mid := (d.startK + d.tempK) / 2
+		d.heatUpJ = (water*d.m.Water.HeatCapacityJPerMolK.At(mid) + solvent*d.m.Solvent.HeatCapacityJPerMolK.At(mid)) * (d.startK - d.tempK)
+	}
+	if err := checkHeater(d.heatUpJ, d.netW(), d.rules.LongestHeatUpS, d.mol0*d.m.MolarVolume(d.x0, d.rig.RoomK)); err != nil {
+		return err
+	}
+	return d.choose()
+}
+
+// choose tells the product from the waste, or says that the lot cannot dry.
+func (d *drawing) choose() error {
+	az := d.eq.Azeotrope
+	if d.at.y > d.x0*(1+1e-9) {
+		return nil
+	}
+	if az.Kind != thermo.NoAzeotrope && d.x0 > az.YWater {
+		return fmt.Errorf("%w: the lot holds %.3g %% water, more than the azeotrope's %.3g %%: drawing that off leaves a wetter pot",
+			ErrNoForerun, 100*d.m.MassFraction(d.x0), 100*d.m.MassFraction(az.YWater))
+	}
+	if d.at.y > d.x0*(1-1e-6) {
+		return fmt.Errorf("%w: liquid and vapour are alike at %.3g %% water", ErrNoForerun, 100*d.m.MassFraction(d.x0))
+	}
+	d.overhead = true
+	return nil
+}
+
+func (d *drawing) checkTemperatures() error {
+	kPa := d.eq.PressurePa / 1e3
+	if d.startK <= d.rig.RoomK {
+		return fmt.Errorf("%w: %s boils at %.1f °C at %.4g kPa, not above the room's %.1f °C", ErrNoForerun, d.m.Solvent.Key, d.startK-273.15, kPa, d.rig.RoomK-273.15)
+	}
+	if d.rig.CoolantK > 0 && d.at.headK <= d.rig.CoolantK {
+		return fmt.Errorf("%w: the vapour condenses at %.1f °C at %.4g kPa, the coolant is at %.1f °C", ErrNoForerun, d.at.headK-273.15, kPa, d.rig.CoolantK-273.15)
+	}
+	if hottest := math.Max(d.startK, d.eq.DryK); d.rig.HighestPotK > 0 && hottest > d.rig.HighestPotK {
+		return fmt.Errorf("%w: the pot reaches %.1f °C at %.4g kPa, the limit is %.1f °C; dry %s boils there at %.3g kPa",
+			ErrNoForerun, hottest-273.15, kPa, d.rig.HighestPotK-273.15, d.m.Solvent.Key, d.m.Solvent.VapourPressurePa.At(d.rig.HighestPotK)/1e3)
+	}
+	return nil
+}
+
+func (d *drawing) netW() float64 { return d.rig.HeaterW * d.rig.HeatShare }
+
+// reached words the reason for stopping.
+func (d *drawing) reached(goal float64) string {
+	switch d.why {
+	case AtHeel:
+		return fmt.Sprintf("heel: %.0f %% of the charge stays in the pot", 100*d.rules.HeelShare)
+	case AtFloor:
+		return fmt.Sprintf("floor: even the first distillate holds %s", quantity.FormatWater(d.m.MassFraction(d.firstY)))
+	case AtPractice:
+		return fmt.Sprintf("practical limit: moist air keeps an outlet at %s or more", quantity.FormatWater(d.rules.LowestOutlet))
+	default:
+		return fmt.Sprintf("hand-over at %s reached", quantity.FormatWater(goal))
+	}
+}

@@ -1,0 +1,319 @@
+package steps_test
+
+import (
+	"errors"
+	"math"
+	"strings"
+	"testing"
+
+	"pgregory.net/rapid"
+
+	"parch/internal/steps"
+	"parch/internal/thermo"
+)
+
+func constant(value float64) thermo.Correlation {
+	return thermo.Correlation{Equation: thermo.DIPPR100, C: [7]float64{value}, Scale: 1}
+}
+
+// ideal is a made-up mixture of constant relative volatility: both vapour
+// pressures have the same slope, water's is volatility times the solvent's.
+func ideal(volatility float64) *thermo.Mixture {
+	liquid := func(key string, lnP, molarMass float64) *thermo.Pure {
+		return &thermo.Pure{
+			Key: key, MolarMassKgPerMol: molarMass, MeltingK: 200, CriticalK: 600,
+			VapourPressurePa:    thermo.Correlation{Equation: thermo.DIPPR101, C: [7]float64{lnP, -4500}, Scale: 1},
+			HeatOfVaporizationJ: constant(37000), HeatCapacityJPerMolK: constant(120), DensityKgPerM3: constant(900), ViscosityPaS: constant(1e-3),
+		}
+	}
+	return &thermo.Mixture{Water: liquid("light", 23.5+math.Log(volatility), 0.018), Solvent: liquid("heavy", 23.5, 0.072), NRTL: thermo.BinaryNRTL(0, 0, 0, 0, 0.3)}
+}
+
+var drawingRules = steps.ForerunRules{
+	HeelShare: 0.1, SetUpS: 1800, SettleColumnS: 1800, AttendedShare: 0.5, ShutDownS: 1800,
+	CoolingFlowM3S: 2e-3 / 60, CoolingRiseK: 10,
+}
+
+func still(stages int) steps.ForerunRig {
+	r := steps.ForerunRig{HeaterW: 1600, HeatShare: 0.5, RoomK: 293.15, Charges: 1, Stages: stages}
+	if stages > 0 {
+		r.RefluxRatio = 5
+	}
+	return r
+}
+
+func boiler(t testing.TB, m *thermo.Mixture, pressurePa float64) *steps.ForerunEquilibrium {
+	t.Helper()
+	eq, err := steps.NewForerunEquilibrium(m, pressurePa)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return eq
+}
+
+// molar is a lot of one kmol with the mole fraction x of water.
+func molar(m *thermo.Mixture, x float64) steps.Lot {
+	return steps.Lot{WaterKg: 1e3 * x * m.Water.MolarMassKgPerMol, SolventKg: 1e3 * (1 - x) * m.Solvent.MolarMassKgPerMol}
+}
+
+// An ideal mixture in a simple still has a closed form (Rayleigh 1902): with the
+// relative volatility a of water,
+//
+//	ln(N0/N) = (ln(x0/x) - a ln((1 - x0)/(1 - x)))/(a - 1)
+//
+// and n stages at total reflux raise a to a^(n+1) (Fenske, Ind. Eng. Chem. 24
+// (1932) 482). Needs no data.
+func TestIdealForerun(t *testing.T) {
+	for _, c := range []struct {
+		volatility, x0, x float64
+		stages            int
+	}{{2.5, 0.2, 0.02, 0}, {4, 0.01, 1e-4, 0}, {1.3, 0.1, 0.08, 0}, {1.5, 0.1, 0.001, 3}, {1.1, 0.3, 0.1, 10}, {1.2, 0.02, 1e-4, 20}} {
+		m := ideal(c.volatility)
+		a := math.Pow(c.volatility, float64(c.stages+1))
+		want := math.Exp(-(math.Log(c.x0/c.x) - a*math.Log((1-c.x0)/(1-c.x))) / (a - 1))
+		o, err := steps.RunForerun(boiler(t, m, atmospherePa), molar(m, c.x0), m.MassFraction(c.x), still(c.stages), drawingRules)
+		if err != nil {
+			t.Errorf("%+v: %v", c, err)
+			continue
+		}
+		got := (o.Out.SolventKg/m.Solvent.MolarMassKgPerMol + o.Out.WaterKg/m.Water.MolarMassKgPerMol) / 1e3
+		if o.Why != steps.AtTarget {
+			t.Errorf("%+v: stopped for %s", c, o.Why)
+		}
+		near(t, "moles left", got, want, 0.001)
+	}
+}
+
+// The distillate of an ideal mixture whose water is the heavy one, by the same form.
+func TestIdealProductOverhead(t *testing.T) {
+	m := ideal(1 / 3.0)
+	const x0, left = 0.02, 0.10 // to the heel
+	// solve the closed form for the water of the pot at N/N0 = left
+	lo, hi := x0, 0.999
+	for range 200 {
+		x := (lo + hi) / 2
+		lnN := -(math.Log(x0/x) - math.Log((1-x0)/(1-x))/3) / (1/3.0 - 1)
+		if lnN > math.Log(left) {
+			lo = x
+		} else {
+			hi = x
+		}
+	}
+	water := (x0 - left*lo) / (1 - left)
+	o, err := steps.RunForerun(boiler(t, m, atmospherePa), molar(m, x0), 0.9, still(0), drawingRules)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if o.Why != steps.AtHeel {
+		t.Errorf("stopped for %s", o.Why)
+	}
+	near(t, "water of the distillate", m.MoleFraction(o.Out.Water()), water, 0.001)
+	near(t, "product", o.Out.SolventKg/m.Solvent.MolarMassKgPerMol+o.Out.WaterKg/m.Water.MolarMassKgPerMol, 900, 0.001)
+}
+
+// A simple still takes about three quarters of tetrahydrofuran on the way from
+// 500 to 50 mg/kg (computed beforehand by another program from the same set).
+func TestSimpleStillWastesTetrahydrofuran(t *testing.T) {
+	m := mixture(t, "tetrahydrofuran")
+	eq := boiler(t, m, atmospherePa)
+	o, err := steps.RunForerun(eq, litres(m, 18, 500e-6), 50e-6, still(0), drawingRules)
+	if err != nil {
+		t.Fatal(err)
+	}
+	lost := o.Losses[0].SolventKg / o.In.SolventKg
+	if math.Abs(lost-0.75) > 0.05 || len(o.Warnings) == 0 {
+		t.Errorf("%.0f %% of the solvent is drawn off; warnings %q", 100*lost, o.Warnings)
+	}
+	withColumn, err := steps.RunForerun(eq, litres(m, 18, 500e-6), 50e-6, still(10), drawingRules)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if l := withColumn.Losses[0].SolventKg / withColumn.In.SolventKg; l > 0.1*lost {
+		t.Errorf("ten stages still lose %.1f %%", 100*l)
+	}
+}
+
+func TestForerunNeverBoilsDry(t *testing.T) {
+	m := mixture(t, "tetrahydrofuran")
+	eq := boiler(t, m, atmospherePa)
+	o, err := steps.RunForerun(eq, litres(m, 18, 5000e-6), 1e-9, still(0), drawingRules)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if o.Why != steps.AtHeel || math.Abs(o.Out.MassKg()/o.In.MassKg()-0.1) > 0.01 {
+		t.Errorf("stopped for %s with %.3g %% left", o.Why, 100*o.Out.MassKg()/o.In.MassKg())
+	}
+	thin := drawingRules
+	thin.HeelShare = 0.05
+	if _, err := steps.RunForerun(eq, litres(m, 18, 5000e-6), 1e-4, still(0), thin); !errors.Is(err, steps.ErrNoForerun) {
+		t.Errorf("a heel of 5 %%: %v", err)
+	}
+}
+
+func TestForerunRefusals(t *testing.T) {
+	m := mixture(t, "tetrahydrofuran")
+	eq := boiler(t, m, atmospherePa)
+	lot := litres(m, 18, 500e-6)
+	for name, c := range map[string]struct {
+		lot   steps.Lot
+		eq    *steps.ForerunEquilibrium
+		spoil func(*steps.ForerunRig)
+		want  string
+	}{
+		"wetter than the azeotrope": {litres(m, 18, 0.2), eq, func(*steps.ForerunRig) {}, "azeotrope"},
+		"hot pot":                   {lot, eq, func(r *steps.ForerunRig) { r.HighestPotK = 330 }, "limit is 56.9 °C"},
+		"boils in the room":         {lot, boiler(t, m, 5e3), func(*steps.ForerunRig) {}, "room"},
+		"warm coolant":              {lot, eq, func(r *steps.ForerunRig) { r.CoolantK = 345 }, "coolant"},
+		"too many stages":           {lot, eq, func(r *steps.ForerunRig) { r.Stages = 21 }, "0 to 20"},
+		"no reflux":                 {lot, eq, func(r *steps.ForerunRig) { r.Stages = 5 }, "reflux"},
+		"no heat":                   {lot, eq, func(r *steps.ForerunRig) { r.HeaterW = 0 }, "heat"},
+	} {
+		r := still(0)
+		c.spoil(&r)
+		_, err := steps.RunForerun(c.eq, c.lot, 50e-6, r, drawingRules)
+		if err == nil || !strings.Contains(err.Error(), c.want) {
+			t.Errorf("%s: %v", name, err)
+		}
+	}
+	weak := still(0)
+	weak.HeaterW = 20
+	limited := drawingRules
+	limited.LongestHeatUpS = 4 * 3600
+	if _, err := steps.RunForerun(eq, lot, 50e-6, weak, limited); !errors.Is(err, steps.ErrHeater) {
+		t.Errorf("20 W under 18 L: %v", err)
+	}
+}
+
+// Water, solvent and heat close, whatever the lot and the column.
+func TestForerunBalances(t *testing.T) {
+	var eqs []*steps.ForerunEquilibrium
+	for _, s := range []string{"toluene", "tetrahydrofuran", "acetonitrile", "ethyl-acetate"} {
+		eqs = append(eqs, boiler(t, mixture(t, s), atmospherePa), boiler(t, mixture(t, s), 50e3))
+	}
+	for _, a := range []float64{0.2, 0.8, 1.3, 5} {
+		eqs = append(eqs, boiler(t, ideal(a), atmospherePa))
+	}
+	rapid.Check(t, func(rt *rapid.T) {
+		eq := rapid.SampledFrom(eqs).Draw(rt, "mixture")
+		water := math.Exp(rapid.Float64Range(math.Log(1e-6), math.Log(0.5)).Draw(rt, "ln w"))
+		kg := rapid.Float64Range(0.5, 60).Draw(rt, "kg")
+		lot := steps.Lot{SolventKg: kg * (1 - water), WaterKg: kg * water, TempK: 293.15}
+		r := still(rapid.IntRange(0, 20).Draw(rt, "stages"))
+		r.Charges = rapid.IntRange(1, 4).Draw(rt, "charges")
+		rules := drawingRules
+		rules.VapourLossPerDay, rules.LowestOutlet = 0.005, 20e-6
+		o, err := steps.RunForerun(eq, lot, water*rapid.Float64Range(0.001, 1.5).Draw(rt, "goal"), r, rules)
+		if errors.Is(err, steps.ErrNoForerun) {
+			return
+		}
+		if err != nil {
+			rt.Fatal(err)
+		}
+		b := o.Balance
+		closes(rt, "water", b.WaterInKg, b.WaterOutKg+b.WaterRemovedKg)
+		closes(rt, "solvent", b.SolventInKg, b.SolventOutKg+b.SolventRemovedKg)
+		closes(rt, "heat", b.HeatInJ, b.HeatUsedJ)
+		if left := o.Course[len(o.Course)-1].LostShare; !(left >= 0 && left <= 1) {
+			rt.Fatalf("lost share %g", left)
+		}
+		if !(o.Out.SolventKg > 0 && o.Out.WaterKg >= 0 && o.HoursTotal > 0) {
+			rt.Fatalf("%+v", o.Out)
+		}
+	})
+}
+
+// A thousand times wider steps change the result by less than 0.5 %.
+func TestForerunStepControl(t *testing.T) {
+	for _, c := range []struct {
+		solvent string
+		water   float64
+		stages  int
+	}{{"tetrahydrofuran", 500e-6, 0}, {"tetrahydrofuran", 0.03, 12}, {"acetonitrile", 0.05, 5}, {"ethyl-acetate", 0.02, 3}} {
+		m := mixture(t, c.solvent)
+		eq := boiler(t, m, atmospherePa)
+		wide, fine := drawingRules, drawingRules
+		wide.StepError, fine.StepError = 1e-5, 1e-10
+		a, errA := steps.RunForerun(eq, litres(m, 10, c.water), 60e-6, still(c.stages), wide)
+		b, errB := steps.RunForerun(eq, litres(m, 10, c.water), 60e-6, still(c.stages), fine)
+		if errA != nil || errB != nil {
+			t.Errorf("%+v: %v, %v", c, errA, errB)
+			continue
+		}
+		near(t, c.solvent+": product", a.Out.SolventKg, b.Out.SolventKg, 0.005)
+		near(t, c.solvent+": drawn off", a.Losses[0].SolventKg, b.Losses[0].SolventKg, 0.005)
+		near(t, c.solvent+": water", a.Out.WaterKg, b.Out.WaterKg, 0.005)
+		near(t, c.solvent+": hours", a.HoursTotal, b.HoursTotal, 0.005)
+	}
+}
+
+// The usual way below the floor of a trap: no second set-up and heat-up.
+func TestTrapThenForerun(t *testing.T) {
+	eq := equilibrium(t, "ethyl-acetate", 20)
+	feed := litres(eq.Mixture, 15, 30000e-6)
+	switchOver := drawingRules
+	switchOver.SetUpS, switchOver.LowestOutlet = 600, 20e-6
+	trap, forerun, err := steps.RunTrapThenForerun(eq, feed, 12000e-6, 500e-6, rig("light"), rules, still(0), switchOver)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if trap.Out.SolventKg != forerun.In.SolventKg || trap.Out.WaterKg != forerun.In.WaterKg {
+		t.Errorf("the forerun starts from %+v, the trap ends with %+v", forerun.In, trap.Out)
+	}
+	if forerun.Figure("heat-up, each charge") > 0.05 {
+		t.Errorf("the hot pot takes %.2g h to heat up", forerun.Figure("heat-up, each charge"))
+	}
+	near(t, "water", forerun.Out.Water(), 500e-6, 0.001)
+	apart, err := steps.RunTrap(eq, feed, 12000e-6, rig("light"), rules)
+	if err != nil {
+		t.Fatal(err)
+	}
+	cold := apart.Out
+	second, err := steps.RunForerun(boiler(t, eq.Mixture, atmospherePa), cold, 500e-6, still(0), drawingRules)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if trap.HoursTotal+forerun.HoursTotal >= apart.HoursTotal+second.HoursTotal-0.5 {
+		t.Errorf("one operation takes %.2f h, two take %.2f h", trap.HoursTotal+forerun.HoursTotal, apart.HoursTotal+second.HoursTotal)
+	}
+}
+
+func TestWatch(t *testing.T) {
+	eq := equilibrium(t, "toluene", 20)
+	o, err := steps.RunTrap(eq, litres(eq.Mixture, 18, 480e-6), 20e-6, rig("light"), rules)
+	if err != nil {
+		t.Fatal(err)
+	}
+	rows := o.Watch(5)
+	if len(rows) != 5 || rows[0] != o.Course[0] || rows[4] != o.Course[len(o.Course)-1] {
+		t.Fatalf("%+v", rows)
+	}
+	for i, p := range rows {
+		if i > 0 && !(p.Hours > rows[i-1].Hours && p.Water < rows[i-1].Water && p.AqueousM3 >= rows[i-1].AqueousM3) {
+			t.Errorf("row %d: %+v after %+v", i, p, rows[i-1])
+		}
+		// toluene boils at 110.6 °C, its azeotrope at 84.1 °C
+		if p.PotK < 357 || p.PotK > 384.5 {
+			t.Errorf("row %d: the pot boils at %.1f °C", i, p.PotK-273.15)
+		}
+	}
+}
+
+// 0.1 mL (ASTM D95) is 115 mg/kg in 1 L of toluene and 6 in 20 L (arithmetic).
+func TestProvedByReading(t *testing.T) {
+	near(t, "1 L", steps.ProvedByReading(0.867)*1e6, 115, 0.01)
+	near(t, "20 L", steps.ProvedByReading(17.34)*1e6, 5.8, 0.02)
+}
+
+func BenchmarkForerun(b *testing.B) {
+	for _, stages := range []int{0, 10} {
+		b.Run(map[int]string{0: "simple", 10: "ten stages"}[stages], func(b *testing.B) {
+			m := mixture(b, "tetrahydrofuran")
+			eq := boiler(b, m, atmospherePa)
+			for b.Loop() {
+				if _, err := steps.RunForerun(eq, litres(m, 18, 500e-6), 50e-6, still(stages), drawingRules); err != nil {
+					b.Fatal(err)
+				}
+			}
+		})
+	}
+}

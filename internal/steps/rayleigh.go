@@ -1,0 +1,194 @@
+package steps
+
+import (
+	"fmt"
+	"math"
+)
+
+// point is the still at one composition of the pot.
+type point struct {
+	logit       float64 // ln(x/(1 - x)) of the pot's water fraction x
+	x, y        float64 // water fractions of pot and distillate
+	slope       float64 // d ln N/d logit = x (1 - x)/(y - x)
+	latent      float64 // J per mole drawn off, what the column returns included
+	potK, headK float64
+}
+
+func logit(x float64) float64 { return math.Log(x / (1 - x)) }
+
+// sample evaluates the still at one composition of the pot.
+func (d *drawing) sample(l float64) (point, error) {
+	x := 1 / (1 + math.Exp(-l))
+	pot, head, err := d.eq.climb(x, d.rig.Stages, d.at.potK)
+	if err != nil {
+		return point{}, err
+	}
+	p := point{logit: l, x: x, y: head.YWater, potK: pot.TempK, headK: head.TempK}
+	p.slope = x * (1 - x) / (p.y - x)
+	water, solvent := d.m.Water.HeatOfVaporizationJ.At(pot.TempK), d.m.Solvent.HeatOfVaporizationJ.At(pot.TempK)
+	p.latent = (1 + d.rig.RefluxRatio) * (pot.YWater*water + (1-pot.YWater)*solvent)
+	return p, nil
+}
+
+// Steps of the march, in ln(x/(1 - x)).
+const (
+	firstStep     = 0.25
+	longestStep   = 1.0
+	shortestStep  = 1e-9
+	mostSteps     = 4000
+	wettestLogit  = 20.0 // a pot of water
+	eventAccuracy = 1e-9
+)
+
+// defaultDrawingError is the error of ln N allowed in each step.
+const defaultDrawingError = 1e-7
+
+// march follows d ln N/d logit = slope towards the logit end, until ln N has
+// fallen to lnHeel or beyond reports (by a value of 0) that its goal is reached.
+// Simpson's rule over a step and over its halves; the difference governs the step.
+func (d *drawing) march(end, lnHeel float64, beyond func() float64) error {
+	over := func() float64 { return math.Max(lnHeel-d.lnLeft, beyond()) }
+	step := math.Copysign(firstStep, end-d.at.logit)
+	d.note()
+	for range mostSteps {
+		last := math.Abs(step) >= math.Abs(end-d.at.logit)
+		if last {
+			step = end - d.at.logit
+		}
+		from, lnLeft, boilUpJ, before := d.at, d.lnLeft, d.boilUpJ, over()
+		off, err := d.advance(step)
+		if err != nil {
+			return err
+		}
+		tiny := math.Abs(step) < shortestStep
+		after := over()
+		switch {
+		case !(off <= d.allowedError) && !tiny:
+			d.at, d.lnLeft, d.boilUpJ = from, lnLeft, boilUpJ
+			step /= 2
+			continue
+		case after > eventAccuracy && !tiny:
+			d.at, d.lnLeft, d.boilUpJ = from, lnLeft, boilUpJ
+			step *= math.Max(0.02, math.Min(0.98, before/(before-after)))
+			continue
+		}
+		d.note()
+		if last || after > -eventAccuracy {
+			return nil
+		}
+		if off < d.allowedError/30 {
+			step = math.Copysign(math.Min(2*math.Abs(step), longestStep), step)
+		}
+	}
+	return fmt.Errorf("the distillation of %s did not end in %d steps: %.3g of the charge left at %.3g mol/mol water",
+		d.m.Solvent.Key, mostSteps, math.Exp(d.lnLeft), d.at.x)
+}
+
+// advance takes one step of the march; off is the error of ln N in it.
+func (d *drawing) advance(step float64) (off float64, err error) {
+	var p [5]point
+	p[0] = d.at
+	for i := 1; i < len(p); i++ {
+		if p[i], err = d.sample(d.at.logit + step*float64(i)/4); err != nil {
+			return 0, err
+		}
+	}
+	s := step / 4
+	half := s / 3 * (p[0].slope + 4*p[1].slope + p[2].slope)
+	whole := half + s/3*(p[2].slope+4*p[3].slope+p[4].slope)
+	coarse := 2 * s / 3 * (p[0].slope + 4*p[2].slope + p[4].slope)
+	lnN := [5]float64{
+		0, s / 12 * (5*p[0].slope + 8*p[1].slope - p[2].slope),
+		half, half + s/12*(5*p[2].slope+8*p[3].slope-p[4].slope), whole,
+	}
+	var heat [5]float64 // J per unit of logit
+	for i := range heat {
+		heat[i] = -d.mol0 * math.Exp(d.lnLeft+lnN[i]) * p[i].slope * p[i].latent
+	}
+	d.boilUpJ += s / 3 * (heat[0] + 4*heat[1] + 2*heat[2] + 4*heat[3] + heat[4])
+	d.at, d.lnLeft = p[4], d.lnLeft+whole
+	return math.Abs(whole-coarse) / 15, nil
+}
+
+// strip draws water off until the pot holds goal.
+func (d *drawing) strip(goal float64) error {
+	d.why = AtTarget
+	if goal == d.rules.LowestOutlet {
+		d.why = AtPractice
+	}
+	end := logit(d.m.MoleFraction(goal))
+	if end >= d.at.logit {
+		d.note()
+		return nil
+	}
+	never := func() float64 { return math.Inf(-1) }
+	if err := d.march(end, math.Log(d.rules.HeelShare), never); err != nil {
+		return err
+	}
+	if d.at.logit > end+eventAccuracy {
+		d.why = AtHeel
+	}
+	return nil
+}
+
+// collect draws the product off until all that is collected holds goal, or the
+// heel is reached.
+func (d *drawing) collect(goal float64) error {
+	lnHeel := math.Log(d.rules.HeelShare)
+	first := d.m.MassFraction(d.firstY)
+	tooWet := func() float64 {
+		water := d.drawn().water()
+		if first > goal || d.lnLeft > -1e-6 || !(water > 0) { // nothing drawn yet, or too dry to tell from none
+			return math.Inf(-1)
+		}
+		return math.Log(water / goal)
+	}
+	if err := d.march(wettestLogit, lnHeel, tooWet); err != nil {
+		return err
+	}
+	switch {
+	case first > goal:
+		d.why = AtFloor
+	case d.lnLeft <= lnHeel+10*eventAccuracy:
+		d.why = AtHeel
+	default:
+		d.why = AtTarget
+	}
+	return nil
+}
+
+// drawnOff is the distillate of one charge so far, kg.
+type drawnOff struct{ waterKg, solventKg float64 }
+
+func (o drawnOff) water() float64 { return o.waterKg / (o.waterKg + o.solventKg) }
+
+func (d *drawing) drawn() drawnOff {
+	left := d.mol0 * math.Exp(d.lnLeft)
+	water := math.Max(0, d.mol0*d.x0-left*d.at.x)
+	return drawnOff{water * d.m.Water.MolarMassKgPerMol, (d.mol0 - left - water) * d.m.Solvent.MolarMassKgPerMol}
+}
+
+func (d *drawing) drawnM3() float64 {
+	o := d.drawn()
+	return o.waterKg/d.m.Water.DensityKgPerM3.At(d.rig.RoomK) + o.solventKg/d.m.Solvent.DensityKgPerM3.At(d.rig.RoomK)
+}
+
+// note adds the present state to the course: the water of what will be the
+// product, and the solvent that is not.
+func (d *drawing) note() {
+	o := d.drawn()
+	solvent0 := d.mol0 * (1 - d.x0) * d.m.Solvent.MolarMassKgPerMol
+	p := Point{
+		Hours: (d.heatUpJ + d.boilUpJ) / d.netW() / secondsPerHour,
+		Water: d.m.MassFraction(d.at.x), LostShare: math.Max(0, o.solventKg/solvent0),
+		DrawnM3: d.drawnM3(), PotK: d.at.potK, HeadK: d.at.headK,
+	}
+	if d.overhead {
+		p.LostShare = 1 - p.LostShare
+		p.Water = d.m.MassFraction(d.firstY)
+		if d.lnLeft < 0 {
+			p.Water = o.water()
+		}
+	}
+	d.course = append(d.course, p)
+}
