@@ -31,7 +31,7 @@ type TernarySet struct {
 	Extra            thermo.TernaryTerm
 	Quality          string  // A or B
 	TMinK, TMaxK     float64 // of the data
-	Band             float64 // factor on the water of the organic layer, from tie-lines held back where there are any
+	Band             float64 // factor on the water of the organic layer: the larger of those of the fit and of tie-lines held back
 	Origin
 }
 

@@ -56,3 +56,12 @@ func (a atoms) kgPerMol() float64 {
 }
 
 func (a atoms) halogenated() bool { return a["F"]+a["Cl"]+a["Br"]+a["I"] > 0 }
+
+// MolarMassKgPerMol is the molar mass of the dry agent; 0 where it has no formula.
+func (a *Agent) MolarMassKgPerMol() float64 {
+	count, err := parseFormula(a.Formula)
+	if err != nil {
+		return 0
+	}
+	return count.kgPerMol()
+}

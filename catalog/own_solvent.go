@@ -151,10 +151,18 @@ func (s *shelf) watsonHeat(n *document.Node, v *Solvent) Curve {
 	return c
 }
 
-// clapeyronCurve is ln P = ln P0 + H/R (1/Tb - 1/T).
+// clapeyronCurve integrates d ln P/dT = H/(R T^2) from the boiling point, with the
+// heat H + h (T - Tb) that the curve of the heat of vaporization has there:
+//
+//	ln P = ln P0 + (H - h Tb)/R (1/Tb - 1/T) + h/R ln(T/Tb)
+//
+// The vapour is taken as ideal: at 25 °C the result may be up to a factor of 2 off.
 func clapeyronCurve(v *Solvent) Curve {
-	slopeK := v.HeatOfVaporization.At(v.BoilingPoint.SI) / thermo.GasConstant
-	return estimated(thermo.DIPPR101, "Pa", math.Log(standardPa)+slopeK/v.BoilingPoint.SI, -slopeK, 0, 0, 1)
+	tb, heat := v.BoilingPoint.SI, v.HeatOfVaporization
+	h := (heat.At(tb+1) - heat.At(tb-1)) / 2
+	slopeK := (heat.At(tb) - h*tb) / thermo.GasConstant
+	power := h / thermo.GasConstant
+	return estimated(thermo.DIPPR101, "Pa", math.Log(standardPa)+slopeK/tb-power*math.Log(tb), -slopeK, power, 0, 1)
 }
 
 // estimated is a curve that rests on an assumption; the unit is SI already.

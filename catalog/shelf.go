@@ -79,7 +79,11 @@ func (s *shelf) cite(n *document.Node) string {
 		return ""
 	}
 	if _, ok := s.cat.Sources[id]; !ok {
-		n.Fail("%q is not in %s%s", id, sourcesFile, n.Offer(id, keysOf(s.cat.Sources)))
+		where := sourcesFile
+		if s.owning {
+			where += " or the own files"
+		}
+		n.Fail("%q is not in %s%s", id, where, n.Offer(id, keysOf(s.cat.Sources)))
 	}
 	s.cited[id] = true
 	return id
@@ -170,6 +174,7 @@ var limits = map[quantity.Dimension]limit{
 	quantity.Mass:                  {0, 1000, "0 to 1000 kg"},
 	quantity.Length:                {0, 5, "0 to 5 m"},
 	quantity.Power:                 {0, 1e5, "0 to 100 kW"},
+	quantity.Velocity:              {0, 0.1, "0 to 100 mm/s"},
 	quantity.Energy:                {0, 1e3 * jPerKWh, "0 to 1000 kWh"},
 	quantity.Time:                  {0, 3.2e9, "0 to 100 yr"},
 	quantity.Rate:                  {0, 1, "0 to 1 1/s"},

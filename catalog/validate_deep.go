@@ -33,7 +33,7 @@ const (
 )
 
 func (c *Catalog) checkGaps(v *Solvent) error {
-	m := &thermo.Mixture{Water: &c.Solvents[waterKey].Pure, Solvent: &v.Pure, NRTL: v.Water.NRTL}
+	m := c.mixture(v)
 	partly := m.CountGaps(gapsFromK) > 0
 	for tK := gapsFromK; tK <= gapsToK; tK += gapStepK {
 		want := 0
@@ -59,4 +59,9 @@ func (s *shelf) validateDeep() error {
 		}
 	}
 	return s.err()
+}
+
+// mixture is water and a solvent in the activity model of the pair.
+func (c *Catalog) mixture(v *Solvent) *thermo.Mixture {
+	return &thermo.Mixture{Water: &c.Solvents[waterKey].Pure, Solvent: &v.Pure, NRTL: v.Water.NRTL}
 }

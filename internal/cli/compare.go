@@ -30,6 +30,7 @@ func (p *program) compare() *cli.Command {
 			onOff("demo", "run the built-in example, whose prices are invented"),
 			&cli.StringFlag{Name: "workbook", Value: defaultWorkbook, Usage: "write the workbook to `F`"},
 			&cli.StringFlag{Name: "json", Usage: "write JSON to `F`; with -, to standard output in place of the text"},
+			&cli.StringFlag{Name: "csv", Usage: "write buying.csv, bills.csv and routes.csv into the folder `DIR`"},
 			&cli.StringFlag{Name: "settings-from", Usage: "take the settings from the JSON `F` of an earlier run"},
 			onOff("force", "write over files that are there already"),
 			onOff("quiet", "print errors only"),
@@ -40,13 +41,13 @@ func (p *program) compare() *cli.Command {
 
 // request is what a compare command asks for.
 type request struct {
-	job, workbook, json, settings string
-	demo, force, quiet            bool
+	job, workbook, json, csv, settings string
+	demo, force, quiet                 bool
 }
 
 func (p *program) runCompare(c *cli.Context) error {
 	q := request{
-		workbook: c.String("workbook"), json: c.String("json"), settings: c.String("settings-from"),
+		workbook: c.String("workbook"), json: c.String("json"), csv: c.String("csv"), settings: c.String("settings-from"),
 		demo: c.Bool("demo"), force: c.Bool("force"), quiet: c.Bool("quiet"),
 	}
 	if err := q.complete(c); err != nil {
@@ -87,6 +88,9 @@ func (q *request) complete(c *cli.Context) (err error) {
 	if c.IsSet("json") && q.json == "" {
 		return misused("--json needs the name of a file, or -", "")
 	}
+	if c.IsSet("csv") && q.csv == "" {
+		return misused("--csv needs the name of a folder", "")
+	}
 	if c.IsSet("settings-from") && q.settings == "" {
 		return misused("--settings-from needs the name of a file", "")
 	}
@@ -100,11 +104,14 @@ func (q *request) complete(c *cli.Context) (err error) {
 }
 
 func (q *request) outputsFree() error {
-	book := free(q.workbook, q.force, "name another file with --workbook, or write over it with --force")
-	if q.json == "" || q.json == "-" {
-		return book
+	problems := []error{free(q.workbook, q.force, "name another file with --workbook, or write over it with --force")}
+	if q.json != "" && q.json != "-" {
+		problems = append(problems, free(q.json, q.force, "name another file with --json, or write over it with --force"))
 	}
-	return errors.Join(book, free(q.json, q.force, "name another file with --json, or write over it with --force"))
+	if q.csv != "" {
+		problems = append(problems, q.tablesFree())
+	}
+	return errors.Join(problems...)
 }
 
 func (p *program) readJob(path string, demo bool, cat *catalog.Catalog) (*job.Job, error) {
@@ -115,7 +122,7 @@ func (p *program) readJob(path string, demo bool, cat *catalog.Catalog) (*job.Jo
 			return nil, err
 		}
 	}
-	j, err := job.Read(name, data, cat)
+	j, err := job.ReadWith(name, data, cat, beside(path))
 	return j, badFile(err)
 }
 
@@ -151,15 +158,16 @@ func (p *program) tunedAnew(from string, opts study.Options, r *study.Report) {
 // a file cannot be written: nothing that was computed is lost.
 func (p *program) deliver(ctx context.Context, q request, r *study.Report) error {
 	var book, doc bytes.Buffer
-	err := errors.Join(workbook.Write(&book, r), report.JSON(&doc, r))
+	tables, err := report.Tables(r)
+	err = errors.Join(err, workbook.Write(&book, r.Priced()), report.JSON(&doc, r))
 	opts := report.Options{}
 	if err == nil {
-		opts, err = q.writeFiles(ctx, book.Bytes(), doc.Bytes())
+		opts, err = q.writeFiles(ctx, book.Bytes(), doc.Bytes(), tables)
 	}
 	return errors.Join(failed(err), failed(p.print(q, r, opts, doc.Bytes())), unreached(r))
 }
 
-func (q *request) writeFiles(ctx context.Context, book, doc []byte) (opts report.Options, err error) {
+func (q *request) writeFiles(ctx context.Context, book, doc []byte, tables []report.Table) (opts report.Options, err error) {
 	if err := ctx.Err(); err != nil {
 		return opts, err
 	}
@@ -172,6 +180,12 @@ func (q *request) writeFiles(ctx context.Context, book, doc []byte) (opts report
 			return opts, err
 		}
 		opts.JSON = q.json
+	}
+	if q.csv != "" {
+		if err := writeTables(q.csv, tables); err != nil {
+			return opts, err
+		}
+		opts.CSV = q.csv
 	}
 	return opts, nil
 }

@@ -20,13 +20,13 @@ import (
 // is a decimal string, and a value that does not exist is null.
 
 type documentOut struct {
-	Parch       string     `json:"parch"`
-	CatalogDate string     `json:"catalog_date"`
-	Seed        int64      `json:"seed"`
-	Draws       int        `json:"draws"`
-	Currency    string     `json:"currency"`
-	Lots        []lotOut   `json:"lots"`
-	Purchases   []struct{} `json:"purchases"`
+	Parch       string        `json:"parch"`
+	CatalogDate string        `json:"catalog_date"`
+	Seed        int64         `json:"seed"`
+	Draws       int           `json:"draws"`
+	Currency    string        `json:"currency"`
+	Lots        []lotOut      `json:"lots"`
+	Purchases   []purchaseOut `json:"purchases"`
 }
 
 type lotOut struct {
@@ -43,31 +43,45 @@ type lotOut struct {
 }
 
 type routeOut struct {
-	ID              string                         `json:"id"`
-	Label           string                         `json:"label"`
-	Rank            *int                           `json:"rank"`
-	MeetsTarget     bool                           `json:"meets_target"`
-	WaterOut        number                         `json:"water_out_mg_per_kg"`
-	WaterOutLow     *number                        `json:"water_out_low_mg_per_kg"`
-	WaterOutHigh    *number                        `json:"water_out_high_mg_per_kg"`
-	ChanceOfTarget  *number                        `json:"chance_of_target"`
-	HoursTotal      number                         `json:"hours_total"`
-	HoursAttended   number                         `json:"hours_attended"`
-	EnergyKWh       number                         `json:"energy_kwh"`
-	CoolingWaterL   number                         `json:"cooling_water_l"`
-	SolventLostL    number                         `json:"solvent_lost_l"`
-	AgentKg         map[string]number              `json:"agent_kg"`
-	WasteKg         number                         `json:"waste_kg"`
-	CO2eKg          number                         `json:"co2e_kg"`
-	CostPerBatch    decimal.Decimal                `json:"cost_per_batch"`
-	CostPerLitre    decimal.Decimal                `json:"cost_per_litre"`
-	CostPerLitreLow *decimal.Decimal               `json:"cost_per_litre_low"`
-	CostPerLitreHi  *decimal.Decimal               `json:"cost_per_litre_high"`
-	CostByHead      map[steps.Head]decimal.Decimal `json:"cost_by_head"`
-	Settings        routes.Settings                `json:"settings"`
-	Steps           []stepOut                      `json:"steps"`
-	Cautions        []cautionOut                   `json:"cautions"`
-	Warnings        []string                       `json:"warnings"`
+	ID              string                          `json:"id"`
+	Label           string                          `json:"label"`
+	Rank            *int                            `json:"rank"`
+	MeetsTarget     bool                            `json:"meets_target"`
+	WaterOut        number                          `json:"water_out_mg_per_kg"`
+	WaterOutLow     *number                         `json:"water_out_low_mg_per_kg"`
+	WaterOutHigh    *number                         `json:"water_out_high_mg_per_kg"`
+	ChanceOfTarget  *number                         `json:"chance_of_target"`
+	HoursTotal      number                          `json:"hours_total"`
+	HoursAttended   number                          `json:"hours_attended"`
+	EnergyKWh       number                          `json:"energy_kwh"`
+	CoolingWaterL   number                          `json:"cooling_water_l"`
+	SolventLostL    number                          `json:"solvent_lost_l"`
+	AgentKg         map[string]number               `json:"agent_kg"`
+	WasteKg         number                          `json:"waste_kg"`
+	CO2eKg          number                          `json:"co2e_kg"`
+	CostPerBatch    *decimal.Decimal                `json:"cost_per_batch"`
+	CostPerLitre    *decimal.Decimal                `json:"cost_per_litre"`
+	CostPerLitreLow *decimal.Decimal                `json:"cost_per_litre_low"`
+	CostPerLitreHi  *decimal.Decimal                `json:"cost_per_litre_high"`
+	CostByHead      map[steps.Head]*decimal.Decimal `json:"cost_by_head"`
+	Settings        routes.Settings                 `json:"settings"`
+	Steps           []stepOut                       `json:"steps"`
+	Cautions        []cautionOut                    `json:"cautions"`
+	Warnings        []string                        `json:"warnings"`
+}
+
+// purchaseOut is what is bought of one item, by mass.
+type purchaseOut struct {
+	Item  string           `json:"item"`
+	Need  number           `json:"need_kg_per_year"`
+	Packs []packOut        `json:"packs"`
+	Total *decimal.Decimal `json:"total"`
+}
+
+type packOut struct {
+	Size  number          `json:"size_kg"`
+	Count int             `json:"count"`
+	Price decimal.Decimal `json:"price"`
 }
 
 type stepOut struct {
@@ -125,7 +139,7 @@ func JSON(w io.Writer, r *study.Report) error {
 		Draws:       r.Draws,
 		Currency:    r.Job.Currency,
 		Lots:        make([]lotOut, len(r.Lots)),
-		Purchases:   []struct{}{},
+		Purchases:   showPurchases(r),
 	}
 	for i := range r.Lots {
 		doc.Lots[i] = showLot(&r.Lots[i])
@@ -179,13 +193,11 @@ func showRoute(r *study.Route) routeOut {
 		AgentKg:       make(map[string]number, len(run.AgentKg)),
 		WasteKg:       number(run.WasteKg),
 		CO2eKg:        number(run.CO2eKg),
-		CostPerBatch:  r.Bill.PerBatch,
-		CostPerLitre:  r.Bill.PerLitre,
-		CostByHead:    make(map[steps.Head]decimal.Decimal, len(steps.Heads)),
+		CostByHead:    make(map[steps.Head]*decimal.Decimal, len(steps.Heads)),
 		Settings:      run.Settings,
 		Steps:         make([]stepOut, len(run.Outcomes)),
 		Cautions:      make([]cautionOut, len(r.Cautions)),
-		Warnings:      append([]string{}, warningsOf(r)...),
+		Warnings:      append(append([]string{}, warningsOf(r)...), r.Bill.Doubts...),
 	}
 	if r.Rank > 0 {
 		out.Rank = &r.Rank
@@ -193,8 +205,14 @@ func showRoute(r *study.Route) routeOut {
 	for agent, kg := range run.AgentKg {
 		out.AgentKg[agent] = number(kg)
 	}
+	if r.Bill.Priced() { // what part of the items costs is no cost
+		out.CostPerBatch, out.CostPerLitre = &r.Bill.PerBatch, &r.Bill.PerLitre
+	}
 	for _, head := range steps.Heads {
-		out.CostByHead[head] = r.Bill.ByHead[head]
+		out.CostByHead[head] = nil
+		if amount := r.Bill.ByHead[head]; r.Bill.Priced() {
+			out.CostByHead[head] = &amount
+		}
 	}
 	if out.Settings.HandOverMgPerKg == nil {
 		out.Settings.HandOverMgPerKg = []float64{}
@@ -206,6 +224,31 @@ func showRoute(r *study.Route) routeOut {
 		out.Cautions[i] = cautionOut{c.Code, c.Level, c.Text}
 	}
 	return out
+}
+
+// showPurchases lists what is bought by mass or has a known one. The rest of the
+// buying list (tests, equipment) stands in the text and the CSV.
+func showPurchases(r *study.Report) []purchaseOut {
+	all := []purchaseOut{}
+	for i := range r.Buying.Purchases {
+		p := &r.Buying.Purchases[i]
+		if p.KgPerUnit == 0 {
+			continue
+		}
+		one := purchaseOut{Item: p.Item, Need: number((p.Process + p.Losses) * p.KgPerUnit), Packs: []packOut{}}
+		if p.Priced {
+			one.Total = &p.Total
+		}
+		for _, o := range p.Orders {
+			pack := packOut{number(o.Amount.InexactFloat64() / float64(o.Count) * p.KgPerUnit), o.Count, o.Pack.Price}
+			if o.Pack.AnyAmount() {
+				pack.Price = o.Cost
+			}
+			one.Packs = append(one.Packs, pack)
+		}
+		all = append(all, one)
+	}
+	return all
 }
 
 func showStep(o *steps.Outcome) stepOut {

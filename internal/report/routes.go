@@ -3,6 +3,7 @@ package report
 import (
 	"fmt"
 	"math"
+	"slices"
 	"strconv"
 	"strings"
 
@@ -43,6 +44,7 @@ func (p *page) verdict(r *study.Report, l *study.Lot) {
 		p.say(3, 0, "Best: %s (%s). %s", best.Label, best.ID, reason(r, reach))
 		p.say(3, 0, "It leaves %s after %s of attended work, %s in all.", quantity.FormatWater(best.Run.WaterOut),
 			hours(best.Run.HoursAttended), hours(best.Run.HoursTotal))
+		p.year(r, best)
 	case l.CannotShow != "" && len(miss) > 0:
 		p.say(3, 0, "No route can be shown to reach the target. The nearest, %s, is computed to leave %s.", miss[0].ID, quantity.FormatWater(miss[0].Run.WaterOut))
 	case len(miss) > 0:
@@ -71,7 +73,7 @@ func reason(r *study.Report, reach []*study.Route) string {
 
 // more is by how much the second route is worse than the first.
 func more(reach []*study.Route) string {
-	if best := reach[0].Objective; best > 0 {
+	if best := reach[0].Objective; best > 0 && reach[1].Bill.Priced() {
 		return fmt.Sprintf(", %s more", quantity.Format(reach[1].Objective/best-1, quantity.Share, "%", 2))
 	}
 	return ""
@@ -89,6 +91,9 @@ func objective(objective, currency string) (aim string, value func(*study.Route)
 		}
 	}
 	return "the lowest cost", func(r *study.Route) string {
+		if !r.Bill.Priced() {
+			return "no price"
+		}
 		return fmt.Sprintf("%s %s a litre delivered", money(r.Bill.PerLitre), currency)
 	}
 }
@@ -112,7 +117,7 @@ func largestHead(r *study.Route) (largest steps.Head, share float64) {
 			largest, most = head, amount
 		}
 	}
-	if !r.Bill.PerBatch.IsPositive() {
+	if !r.Bill.PerBatch.IsPositive() || !r.Bill.Priced() {
 		return largest, 0
 	}
 	return largest, most.Div(r.Bill.PerBatch).InexactFloat64()
@@ -145,11 +150,25 @@ func (p *page) ranking(r *study.Report, l *study.Lot) {
 		rows[i] = []string{
 			strconv.Itoa(route.Rank), brokenAtPlus(route.ID, routeColumns), mgKg(run.WaterOut), quantity.Significant(run.HoursAttended, 3),
 			quantity.Significant(run.HoursTotal, 3), quantity.Significant(run.EnergyKWh, 3), quantity.Significant(run.SolventLostL, 2),
-			money(route.Bill.PerBatch), money(route.Bill.PerLitre),
+			marked(route, route.Bill.PerBatch), marked(route, route.Bill.PerLitre),
 		}
 	}
 	p.line("")
 	p.table(columns, rows)
+	if slices.ContainsFunc(reach, func(r *study.Route) bool { return r.Bill.Priced() && len(r.Bill.Doubts) > 0 }) {
+		p.say(5, 0, "* rests on prices to check, which stand below.")
+	}
+}
+
+// marked is money with a mark where it rests on prices that have to be checked.
+func marked(r *study.Route, amount decimal.Decimal) string {
+	switch {
+	case !r.Bill.Priced():
+		return "no price"
+	case len(r.Bill.Doubts) > 0:
+		return money(amount) + "*"
+	}
+	return money(amount) + " "
 }
 
 // missing lists how far each route got that does not reach the limit.

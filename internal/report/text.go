@@ -15,6 +15,7 @@ import (
 type Options struct {
 	Workbook string // where the workbook was written, "" for none
 	JSON     string // where the JSON was written, "" for none
+	CSV      string // the folder where the tables were written, "" for none
 }
 
 // Text prints the report for a terminal: for each lot the best route with the
@@ -30,6 +31,8 @@ func Text(w io.Writer, r *study.Report, opts Options) error {
 	for i := range r.Lots {
 		p.lot(i+1, r, &r.Lots[i])
 	}
+	p.buying(r)
+	p.doubtful(r)
 	p.weak(r.Weak)
 	p.notes("Notes on the job", r.Warnings)
 	p.files(opts)
@@ -108,7 +111,7 @@ func count(n float64, one, many string) string {
 }
 
 func (p *page) files(opts Options) {
-	if opts.Workbook == "" && opts.JSON == "" {
+	if opts == (Options{}) {
 		return
 	}
 	p.line("")
@@ -117,5 +120,8 @@ func (p *page) files(opts Options) {
 	}
 	if opts.JSON != "" {
 		p.line("JSON:     " + opts.JSON)
+	}
+	if opts.CSV != "" {
+		p.line("Tables:   " + opts.CSV)
 	}
 }

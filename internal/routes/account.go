@@ -13,7 +13,7 @@ const secondsPerYear = 365.25 * 86400
 const discardedLot = "the reclaimed lot that is not dried"
 
 // account turns what a step did into what is paid for.
-func (c *Case) account(place int, o steps.Outcome, s Settings, soaks int) []StageUse {
+func (c *Case) account(place int, o steps.Outcome, choice choice) []StageUse {
 	var uses []StageUse
 	use := func(head steps.Head, item, unit string, quantity float64, basis string) {
 		if quantity > 0 {
@@ -21,7 +21,7 @@ func (c *Case) account(place int, o steps.Outcome, s Settings, soaks int) []Stag
 		}
 	}
 	use(steps.Labour, "technician", "hour", o.HoursAttended, fmt.Sprintf("attended hours of the %s", o.Kind))
-	use(steps.Energy, "electricity", "kwh", o.EnergyKWh, "heater power x hours at the heater")
+	use(steps.Energy, "electricity", "kwh", o.EnergyKWh, energyBasis(o.Kind))
 	use(steps.CoolingWater, "cooling-water", "m3", o.CoolingWaterL/1e3, "tap flow x hours of reflux")
 	density := c.Mixture.Solvent.DensityKgPerM3.At(c.Job.Site.RoomK)
 	for _, l := range o.Losses {
@@ -36,10 +36,20 @@ func (c *Case) account(place int, o steps.Outcome, s Settings, soaks int) []Stag
 		receiver, _ := c.receiver()
 		uses = append(uses, c.wear(place, still, 1)...)
 		uses = append(uses, c.wear(place, receiver, 1)...)
+	case steps.Salt:
+		use(steps.Agent, o.Agent, "kg", o.AgentKg, "used once")
+	case steps.Reactive:
+		use(steps.Agent, o.Agent, "kg", o.AgentKg, "charged: need and surplus, used once")
+		use(steps.Labour, "technician", "hour", c.practice("reactive-spent")/3600, "spent agent, by people trained for it")
+		still, _ := c.Still()
+		uses = append(uses, c.wear(place, still, 1)...)
 	case steps.Soak:
-		uses = append(uses, c.sieveUses(place, o, s.Sieve[soaks])...)
+		uses = append(uses, c.sieveUses(place, o, choice.after)...)
 		vessel, count := c.vessel()
 		uses = append(uses, c.wear(place, vessel, count)...)
+	case steps.Column:
+		uses = append(uses, c.sieveUses(place, o, choice.after)...)
+		uses = append(uses, c.wear(place, c.Catalog.Apparatus[o.Apparatus], 1)...)
 	case steps.Buy:
 		use(steps.Purchase, c.Solvent.Key+"-dry", "litre", c.Lot.BatchM3*1e3, "the batch bought dry")
 		if c.Lot.Reclaimed {
@@ -47,6 +57,16 @@ func (c *Case) account(place int, o steps.Outcome, s Settings, soaks int) []Stag
 		}
 	}
 	return uses
+}
+
+func energyBasis(kind steps.Kind) string {
+	switch kind {
+	case steps.Soak:
+		return "stirrer power x hours"
+	case steps.Column:
+		return "pump power x hours"
+	}
+	return "heater power x hours at the heater"
 }
 
 // sieveUses is the sieve's share per use: its price over its lives, the oven
@@ -123,6 +143,8 @@ func (c *Case) wasteItem(class steps.WasteClass) string {
 		return "waste-aqueous"
 	case steps.WetSolidWaste:
 		return "waste-wet-solid"
+	case steps.ReactiveWaste:
+		return "waste-reactive"
 	}
 	if c.Solvent.Hazards.Halogenated {
 		return "waste-halogenated-liquid"

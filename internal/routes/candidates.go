@@ -6,7 +6,6 @@ import (
 	"sort"
 	"strings"
 
-	"parch/catalog"
 	"parch/internal/quantity"
 	"parch/internal/steps"
 )
@@ -15,10 +14,14 @@ import (
 // offered, each with its reason. The order is fixed.
 func (c *Case) Candidates() ([]Route, []Excluded) {
 	var offered []Route
-	excluded := c.refusedAgents()
+	var excluded []Excluded
+	told := map[string]bool{}
 	for _, r := range c.chains() {
 		if reason, source := c.refuse(r); reason != "" {
-			excluded = append(excluded, Excluded{r.ID(), reason, source})
+			if id := c.refusedPart(r).ID(); !told[id] {
+				told[id] = true
+				excluded = append(excluded, Excluded{id, reason, source})
+			}
 			continue
 		}
 		offered = append(offered, r)
@@ -26,27 +29,62 @@ func (c *Case) Candidates() ([]Route, []Excluded) {
 	return offered, excluded
 }
 
-// chains are the orders in which the steps make sense: free water first, bulk
-// water by boiling, the rest over a sorbent; or a dry grade bought instead.
-func (c *Case) chains() []Route {
-	heads := []Route{nil, {{Kind: steps.Settle}}, {{Kind: steps.Trap}}, {{Kind: steps.Settle}, {Kind: steps.Trap}}}
-	var all []Route
-	for _, head := range heads {
-		if head != nil {
-			all = append(all, head)
+// refusedPart is the shortest head of a refused route that is refused for the
+// same reason, or the refused step alone where it does not depend on its place:
+// what is refused by itself is told once, not in every chain that holds it.
+func (c *Case) refusedPart(r Route) Route {
+	for i, s := range r {
+		alone := Route{s}
+		if i < len(r)-1 && s.Kind == steps.Salt {
+			alone = append(alone, r[i+1]) // as the last step a salt has rules of its own
 		}
-		for _, agent := range c.sorbents() {
-			all = append(all, append(slices.Clone(head), Stage{Kind: steps.Soak, Agent: agent}))
+		if reason, _ := c.refuse(alone); reason != "" {
+			return alone
+		}
+	}
+	return r
+}
+
+// chains are the orders in which the steps make sense: free water first, bulk
+// water by boiling or a salt, the rest over a sorbent or a reactive agent; or a
+// dry grade bought instead.
+func (c *Case) chains() []Route {
+	bulk := []Route{nil, {{Kind: steps.Trap}}}
+	for _, salt := range c.agents("salt") {
+		bulk = append(bulk, Route{{Kind: steps.Salt, Agent: salt}})
+	}
+	var all []Route
+	for _, first := range []Route{nil, {{Kind: steps.Settle}}} {
+		for _, second := range bulk {
+			head := append(slices.Clone(first), second...)
+			if len(head) > 0 {
+				all = append(all, head)
+			}
+			for _, last := range c.finishers() {
+				all = append(all, append(slices.Clone(head), last))
+			}
 		}
 	}
 	return append(all, Route{{Kind: steps.Buy}})
 }
 
-// sorbents are the agents of the catalog that a soak can be computed for.
-func (c *Case) sorbents() []string {
+// finishers are the steps that can take a lot to its target.
+func (c *Case) finishers() []Stage {
+	var all []Stage
+	for _, agent := range c.agents("sieve", "oxide") {
+		all = append(all, Stage{Kind: steps.Soak, Agent: agent}, Stage{Kind: steps.Column, Agent: agent})
+	}
+	for _, agent := range c.agents("reactive") {
+		all = append(all, Stage{Kind: steps.Reactive, Agent: agent})
+	}
+	return all
+}
+
+// agents of the kinds, sorted.
+func (c *Case) agents(kinds ...string) []string {
 	var keys []string
 	for key, a := range c.Catalog.Agents {
-		if a.Isotherm != nil {
+		if slices.Contains(kinds, a.Kind) {
 			keys = append(keys, key)
 		}
 	}
@@ -56,7 +94,7 @@ func (c *Case) sorbents() []string {
 
 // refuse returns the reason why a route is not offered, or "".
 func (c *Case) refuse(r Route) (reason, source string) {
-	for _, s := range r {
+	for i, s := range r {
 		if slices.Contains(c.Job.Exclude.Steps, string(s.Kind)) {
 			return fmt.Sprintf("the job excludes the step %q", s.Kind), "job"
 		}
@@ -65,8 +103,12 @@ func (c *Case) refuse(r Route) (reason, source string) {
 			reason, source = c.refuseTrap()
 		case steps.Settle:
 			reason, source = c.refuseSettle()
-		case steps.Soak:
+		case steps.Salt:
+			reason, source = c.refuseSalt(s.Agent, i == len(r)-1)
+		case steps.Soak, steps.Column:
 			reason, source = c.refuseAgent(s.Agent)
+		case steps.Reactive:
+			reason, source = c.refuseReactive(s.Agent)
 		case steps.Buy:
 			reason, source = c.refuseBuy()
 		}
@@ -159,39 +201,6 @@ func (c *Case) refuseBuy() (reason, source string) {
 	return fmt.Sprintf("no price for dry %s", c.Solvent.Name), ""
 }
 
-// refusedAgents lists the agents that no route may use with this solvent.
-func (c *Case) refusedAgents() []Excluded {
-	var out []Excluded
-	keys := make([]string, 0, len(c.Catalog.Agents))
-	for key, a := range c.Catalog.Agents {
-		if a.Isotherm == nil { // those with one are refused as routes of their own
-			keys = append(keys, key)
-		}
-	}
-	sort.Strings(keys)
-	for _, key := range keys {
-		if v, ok := c.Catalog.Verdict(c.Solvent, key); !ok || !v.Allowed() {
-			reason, source := c.refuseAgent(key)
-			if reason == "" {
-				reason, source = "accepted by the job, but this step is not computed yet", "job"
-			}
-			out = append(out, Excluded{stepFor(c.Catalog.Agents[key]) + ":" + key, reason, source})
-		}
-	}
-	return out
-}
-
-// stepFor is the step that would use an agent.
-func stepFor(a *catalog.Agent) string {
-	switch a.Kind {
-	case "salt":
-		return "salt"
-	case "reactive":
-		return "reactive"
-	}
-	return string(steps.Soak)
-}
-
 // Label is a route in words.
 func (c *Case) Label(r Route) string {
 	parts := make([]string, len(r))
@@ -201,8 +210,14 @@ func (c *Case) Label(r Route) string {
 			parts[i] = "settle"
 		case steps.Trap:
 			parts[i] = "boil out under a trap"
+		case steps.Salt:
+			parts[i] = "stir with " + c.Catalog.Agents[s.Agent].Name
 		case steps.Soak:
 			parts[i] = "stand over " + c.Catalog.Agents[s.Agent].Name
+		case steps.Column:
+			parts[i] = "pump through " + c.Catalog.Agents[s.Agent].Name
+		case steps.Reactive:
+			parts[i] = "distil off " + c.Catalog.Agents[s.Agent].Name
 		case steps.Buy:
 			parts[i] = "buy dry"
 		}

@@ -5,7 +5,6 @@ import (
 	"fmt"
 	"math"
 
-	"parch/internal/quantity"
 	"parch/internal/steps"
 )
 
@@ -20,35 +19,23 @@ const (
 func (c *Case) Run(r Route, s Settings) (Run, error) {
 	run := Run{Route: r, Settings: s, AgentKg: map[string]float64{}}
 	lot := c.Feed
-	soaks := 0
 	handOver := make([]float64, 0, len(r))
 	for i, stage := range r {
 		goal := c.Goal()
 		if i < len(r)-1 {
 			goal = s.HandOverMgPerKg[i] * 1e-6
 		}
-		var o steps.Outcome
-		var err error
-		switch stage.Kind {
-		case steps.Settle:
-			o, err = steps.RunSettle(c.Mixture, lot, c.Job.Site.RoomK, c.settleRules())
-		case steps.Trap:
-			o, err = c.runTrap(lot, goal)
-		case steps.Soak:
-			o, err = c.runSoak(lot, goal, stage.Agent, s.SoakHours[soaks], s.Sieve[soaks])
-		case steps.Buy:
-			o = steps.RunBuy(c.Mixture, lot, c.Lot.BatchM3, c.dryGrade(), c.practice("buy-attended"), c.Job.Site.RoomK)
-		}
+		choice := s.at(r, i)
+		o, err := c.step(stage, lot, goal, i == len(r)-1, choice)
 		if err != nil {
 			return Run{}, fmt.Errorf("%s: %w", stage.Kind, refused(err))
 		}
-		uses := c.account(i+1, o, s, soaks)
+		uses := c.account(i+1, o, choice)
 		o.HoursAttended, o.EnergyKWh = sum(uses, "technician"), sum(uses, "electricity")
 		run.add(uses...)
 		run.Outcomes = append(run.Outcomes, o)
-		if stage.Kind == steps.Soak {
+		if o.AgentKg > 0 {
 			run.AgentKg[stage.Agent] += o.AgentKg
-			soaks++
 		}
 		if i < len(r)-1 {
 			handOver = append(handOver, o.Out.Water()*1e6)
@@ -60,6 +47,27 @@ func (c *Case) Run(r Route, s Settings) (Run, error) {
 	return run, nil
 }
 
+// step carries out one stage.
+func (c *Case) step(stage Stage, lot steps.Lot, goal float64, last bool, choice choice) (steps.Outcome, error) {
+	switch stage.Kind {
+	case steps.Settle:
+		return steps.RunSettle(c.Mixture, lot, c.Job.Site.RoomK, c.settleRules())
+	case steps.Trap:
+		return c.runTrap(lot, goal)
+	case steps.Salt:
+		return c.runSalt(lot, goal, stage.Agent, last)
+	case steps.Soak:
+		return c.runSoak(lot, goal, stage.Agent, choice)
+	case steps.Column:
+		return c.runColumn(lot, goal, stage.Agent, choice)
+	case steps.Reactive:
+		return c.runReactive(lot, stage.Agent)
+	case steps.Buy:
+		return steps.RunBuy(c.Mixture, lot, c.Lot.BatchM3, c.dryGrade(), c.practice("buy-attended"), c.Job.Site.RoomK), nil
+	}
+	return steps.Outcome{}, fmt.Errorf("step %q is not known", stage.Kind)
+}
+
 // refusal is a step's error that is ErrRefused too and reads like the step's.
 type refusal struct{ error }
 
@@ -69,7 +77,8 @@ func (r refusal) Unwrap() error { return r.error }
 
 // refused marks the errors that say that a step does not work on this lot.
 func refused(err error) error {
-	for _, known := range []error{steps.ErrNoTrap, steps.ErrNothingSettles, steps.ErrWetSieve, steps.ErrUnfit, steps.ErrNoSense} {
+	for _, known := range []error{steps.ErrNoTrap, steps.ErrNothingSettles, steps.ErrWetSieve, steps.ErrUnfit, steps.ErrNoSense,
+		steps.ErrNoColumn, steps.ErrSaltTooWarm, steps.ErrPreDry, steps.ErrHeater} {
 		if errors.Is(err, known) {
 			return refusal{err}
 		}
@@ -175,34 +184,6 @@ func (c *Case) boilOut(lot steps.Lot, goal float64) (steps.Outcome, error) {
 		FillVolumeM3: receiver.FillVolume.SI, UsableVolumeM3: receiver.Volume.SI,
 		RoomK: c.Job.Site.RoomK, Charges: charges,
 	}, rules)
-}
-
-func (c *Case) runSoak(lot steps.Lot, goal float64, agent string, hours float64, after string) (steps.Outcome, error) {
-	if lot.Water() <= goal {
-		return steps.Outcome{}, refusal{fmt.Errorf("%s is at or below the %s asked for: nothing is left for a sieve", quantity.FormatWater(lot.Water()), quantity.FormatWater(goal))}
-	}
-	_, vessels := c.vessel()
-	rig := steps.SoakRig{
-		TempK: c.Job.Site.RoomK, DepthM: c.depth(vessels), Vessels: vessels,
-		StillRatePerS: c.Solvent.StillRate.SI, RateDepthM: c.practice("still-rate-depth"),
-		AttendedS: c.practice("soak-attended"), WaterMolarM3: c.practice("water-molar-volume"),
-	}
-	return steps.SoakFor(c.Mixture, lot, goal, hours*3600, c.sorbent(agent, after), rig)
-}
-
-// sorbent is a sieve of the catalog with the lot's history. A sieve that is
-// used again is sized for its last use.
-func (c *Case) sorbent(agent, after string) steps.Sorbent {
-	a := c.Catalog.Agents[agent]
-	share := 1.0
-	if after == Regenerate {
-		share = math.Pow(1-a.Fade.SI, a.Lives.SI-1)
-	}
-	return steps.Sorbent{
-		Key: agent, Loading: a.Isotherm.LoadingKgPerKg, ResidualKgPerKg: c.Lot.ResidualLoading, CapacityShare: share,
-		BeadDiameterM: a.BeadDiameter.SI, BeadKgPerM3: a.BeadDensity.SI, Porosity: a.BeadPorosity.SI, Tortuosity: a.BeadTortuosity.SI,
-		HoldUpM3PerKg: a.HoldUp.SI, MinDoseKgPerM3: c.practice("dose-minimum"), MaxDoseKgPerM3: a.MaxDose.SI,
-	}
 }
 
 // dryGrade is the water a dry grade is sold with, the job's own before the catalog's.

@@ -6,6 +6,7 @@ package routes
 import (
 	"errors"
 	"fmt"
+	"slices"
 	"strings"
 
 	"parch/internal/steps"
@@ -32,11 +33,44 @@ func (r Route) ID() string {
 	return strings.Join(parts, "+")
 }
 
+// count is the number of stages of the kinds.
+func (r Route) count(kinds ...steps.Kind) int {
+	n := 0
+	for _, s := range r {
+		if slices.Contains(kinds, s.Kind) {
+			n++
+		}
+	}
+	return n
+}
+
+// longestSoakHours is a year.
+const longestSoakHours = 366 * 24
+
+// choice is what the settings say of one stage.
+type choice struct {
+	soakHours float64
+	stirred   bool
+	after     string // what is done with the sieve
+}
+
+// at returns the choices of stage i.
+func (s Settings) at(r Route, i int) (c choice) {
+	if k := r[:i].count(steps.Soak); r[i].Kind == steps.Soak {
+		c.soakHours, c.stirred = s.SoakHours[k], s.Stirred[k]
+	}
+	if k := r[:i].count(steps.Soak, steps.Column); r[i].Kind == steps.Soak || r[i].Kind == steps.Column {
+		c.after = s.Sieve[k]
+	}
+	return c
+}
+
 // Settings are the free choices of a route. Doses follow from them.
 type Settings struct {
 	HandOverMgPerKg []float64 `json:"hand_over_mg_per_kg"`  // water after each stage but the last
 	SoakHours       []float64 `json:"soak_hours,omitempty"` // one for each soak
-	Sieve           []string  `json:"sieve,omitempty"`      // "regenerate" or "discard", one for each soak
+	Stirred         []bool    `json:"stirred,omitempty"`    // one for each soak
+	Sieve           []string  `json:"sieve,omitempty"`      // "regenerate" or "discard", one for each soak or column
 }
 
 // ErrRefused means that the physics refuses a step of a route on this lot.
@@ -47,18 +81,14 @@ var ErrSettings = errors.New("settings do not fit")
 
 // Fit reports settings that do not belong to the route.
 func (s Settings) Fit(r Route) error {
-	soaks := 0
-	for _, stage := range r {
-		if stage.Kind == steps.Soak {
-			soaks++
-		}
-	}
-	if len(s.HandOverMgPerKg) != len(r)-1 || len(s.SoakHours) != soaks || len(s.Sieve) != soaks {
-		return fmt.Errorf("%s: %w: %d hand-overs, %d soak hours, %d sieve choices", r.ID(), ErrSettings, len(s.HandOverMgPerKg), len(s.SoakHours), len(s.Sieve))
+	soaks, beds := r.count(steps.Soak), r.count(steps.Soak, steps.Column)
+	if len(s.HandOverMgPerKg) != len(r)-1 || len(s.SoakHours) != soaks || len(s.Stirred) != soaks || len(s.Sieve) != beds {
+		return fmt.Errorf("%s: %w: %d hand-overs, %d soak hours, %d stirred, %d sieve choices", r.ID(), ErrSettings,
+			len(s.HandOverMgPerKg), len(s.SoakHours), len(s.Stirred), len(s.Sieve))
 	}
 	for _, h := range s.SoakHours {
-		if !(h > 0) {
-			return fmt.Errorf("%s: %w: a soak of %g h is not possible", r.ID(), ErrSettings, h)
+		if !(h > 0 && h <= longestSoakHours) {
+			return fmt.Errorf("%s: %w: a soak of %g h; above 0 to %d h are allowed", r.ID(), ErrSettings, h, longestSoakHours)
 		}
 	}
 	for _, after := range s.Sieve {

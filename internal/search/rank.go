@@ -9,14 +9,15 @@ import (
 type Entry struct {
 	ID           string
 	Meets        bool
+	NoPrice      bool    // part of it has no price: its cost is not known
 	Value        float64 // of the objective
 	CostPerLitre float64
 	WaterOut     float64
 }
 
 // Order sorts routes: those that reach the target by objective, then cost per
-// litre, then id; after them those that miss, the driest first. It returns the
-// places of the entries in that order.
+// litre, then id; after them those that reach it and have no price; last those
+// that miss, the driest first. It returns the places of the entries in that order.
 func Order(entries []Entry) []int {
 	order := make([]int, len(entries))
 	for i := range order {
@@ -30,6 +31,8 @@ func before(a, b Entry) bool {
 	switch {
 	case a.Meets != b.Meets:
 		return a.Meets
+	case a.Meets && a.NoPrice != b.NoPrice:
+		return b.NoPrice
 	case !a.Meets && a.WaterOut != b.WaterOut:
 		return a.WaterOut < b.WaterOut
 	case a.Meets && differ(a.Value, b.Value):

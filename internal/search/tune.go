@@ -4,6 +4,7 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"slices"
 
 	"gonum.org/v1/gonum/optimize"
 
@@ -20,16 +21,30 @@ var ErrTooSlow = errors.New("too slow")
 // weeks where nothing shorter reaches the target.
 var soakHours = []float64{8, 16, 24, 36, 48, 64, 72, 96, 120, 168, 240, 336, 504, 672}
 
+// stirredHours are the same for a stirred vessel, which is not left over a weekend.
+var stirredHours = []float64{2, 4, 8, 16, 24, 48}
+
 // Tuner finds the best settings of the routes of one case.
 type Tuner struct {
 	Case      *routes.Case
 	Book      costs.Book
 	Objective Objective
+	Site      *costs.Arrangement // nil: uses are paid for as they come
+}
+
+// Run carries out a route and arranges its uses as the site pays for them.
+func (t *Tuner) Run(r routes.Route, s routes.Settings) (routes.Run, error) {
+	run, err := t.Case.Run(r, s)
+	if err == nil && t.Site != nil {
+		t.Site.Apply(&run, t.Case.Lot.BatchesPerYear)
+	}
+	return run, err
 }
 
 // trial is a run and how good it is.
 type trial struct {
 	run   routes.Run
+	stand stand
 	score float64
 }
 
@@ -49,7 +64,7 @@ func (t *Tuner) score(run *routes.Run) (float64, error) {
 func (t *Tuner) Tune(r routes.Route) (routes.Run, error) {
 	place := handOverPlace(r)
 	if place < 0 {
-		best, err := t.bestSoak(r, nil)
+		best, err := t.bestSoak(r, nil, func(soak stand, after string) routes.Settings { return settings(r, -1, 0, soak, after) })
 		return best.run, err
 	}
 	lo, hi, err := t.handOverRange(r, place)
@@ -77,7 +92,7 @@ const worthASieve = 1.25
 // handOverRange is from what the trap can do at best to what it is given.
 func (t *Tuner) handOverRange(r routes.Route, place int) (lo, hi float64, err error) {
 	head := r[:place+1]
-	run, err := t.Case.Run(head, settings(head, -1, 0, 0, ""))
+	run, err := t.Case.Run(head, settings(head, -1, 0, stand{}, ""))
 	if err != nil {
 		return 0, 0, err
 	}
@@ -92,14 +107,23 @@ func (t *Tuner) handOverRange(r routes.Route, place int) (lo, hi float64, err er
 	return lo, hi, nil
 }
 
-func settings(r routes.Route, place int, handOver, hours float64, after string) routes.Settings {
+// stand is how a soak is carried out.
+type stand struct {
+	hours   float64
+	stirred bool
+}
+
+func settings(r routes.Route, place int, handOver float64, soak stand, after string) routes.Settings {
 	s := routes.Settings{HandOverMgPerKg: make([]float64, len(r)-1)}
 	if place >= 0 {
 		s.HandOverMgPerKg[place] = handOver
 	}
 	for _, stage := range r {
-		if stage.Kind == steps.Soak {
-			s.SoakHours = append(s.SoakHours, hours)
+		switch stage.Kind {
+		case steps.Soak:
+			s.SoakHours, s.Stirred = append(s.SoakHours, soak.hours), append(s.Stirred, soak.stirred)
+			s.Sieve = append(s.Sieve, after)
+		case steps.Column:
 			s.Sieve = append(s.Sieve, after)
 		}
 	}
@@ -108,14 +132,15 @@ func settings(r routes.Route, place int, handOver, hours float64, after string) 
 
 const coarsePoints = 9
 
-// bestHandOver scans ln(hand-over) coarsely and refines around the best point
-// with Nelder & Mead's method in one bounded variable.
+// bestHandOver scans ln(hand-over) coarsely with every stand and refines around
+// the best point, with its stand and the neighbours of it, by Nelder & Mead's
+// method in one bounded variable.
 func (t *Tuner) bestHandOver(r routes.Route, place int, lo, hi float64) (trial, error) {
 	best := trial{score: math.Inf(1)}
 	var last error
-	try := func(u float64) float64 {
-		found, err := t.bestSoak(r, func(hours float64, after string) routes.Settings {
-			return settings(r, place, math.Exp(u), hours, after)
+	try := func(u float64, near *stand) float64 {
+		found, err := t.bestSoak(r, near, func(soak stand, after string) routes.Settings {
+			return settings(r, place, math.Exp(u), soak, after)
 		})
 		if err != nil {
 			last = err
@@ -131,14 +156,15 @@ func (t *Tuner) bestHandOver(r routes.Route, place int, lo, hi float64) (trial, 
 	lowest := math.Inf(1)
 	for i := range coarsePoints {
 		u := lo + spacing*float64(i)
-		if s := try(u); s < lowest {
+		if s := try(u, nil); s < lowest {
 			lowest, bestU = s, u
 		}
 	}
 	if math.IsInf(lowest, 1) {
 		return best, last
 	}
-	refine(try, math.Max(lo, bestU-spacing), math.Min(hi, bestU+spacing))
+	near := best.stand
+	refine(func(u float64) float64 { return try(u, &near) }, math.Max(lo, bestU-spacing), math.Min(hi, bestU+spacing))
 	return t.rounded(r, place, best, lo, hi)
 }
 
@@ -152,8 +178,8 @@ func (t *Tuner) rounded(r routes.Route, place int, best trial, lo, hi float64) (
 	if handOver < math.Exp(lo)*(1-1e-9) || handOver > math.Exp(hi) {
 		return best, nil
 	}
-	found, err := t.bestSoak(r, func(hours float64, after string) routes.Settings {
-		return settings(r, place, handOver, hours, after)
+	found, err := t.bestSoak(r, &best.stand, func(soak stand, after string) routes.Settings {
+		return settings(r, place, handOver, soak, after)
 	})
 	if err != nil || found.score > best.score*(1+next) {
 		return best, nil
@@ -170,22 +196,26 @@ func refine(f func(u float64) float64, lo, hi float64) {
 	_, _ = optimize.Minimize(optimize.Problem{Func: inside}, []float64{0}, limits, &optimize.NelderMead{SimplexSize: 1})
 }
 
-// bestSoak tries the stands and what is done with the sieve afterwards.
-func (t *Tuner) bestSoak(r routes.Route, with func(hours float64, after string) routes.Settings) (trial, error) {
-	if with == nil {
-		with = func(hours float64, after string) routes.Settings { return settings(r, -1, 0, hours, after) }
+// bestSoak tries the stands, or those near one of them, and what is done with
+// the sieve afterwards.
+func (t *Tuner) bestSoak(r routes.Route, near *stand, with func(soak stand, after string) routes.Settings) (trial, error) {
+	if !has(r, steps.Soak) && !has(r, steps.Column) {
+		return t.one(r, with(stand{}, ""))
 	}
-	if !hasSoak(r) {
-		return t.one(r, with(0, ""))
-	}
-	hours, err := t.hoursOnOffer(r, with)
-	if err != nil {
-		return trial{}, err
+	stands := []stand{{}}
+	if has(r, steps.Soak) {
+		var err error
+		if stands, err = t.standsOnOffer(r, with); err != nil {
+			return trial{}, err
+		}
 	}
 	best := trial{score: math.Inf(1)}
-	for _, h := range hours {
-		for _, after := range []string{routes.Regenerate, routes.Discard} {
-			found, err := t.one(r, with(h, after))
+	for i, soak := range stands {
+		if near != nil && !neighbours(stands, i, *near) {
+			continue
+		}
+		for _, after := range t.afterUse() {
+			found, err := t.one(r, with(soak, after))
 			if errors.Is(err, ErrTooSlow) {
 				continue
 			}
@@ -194,6 +224,7 @@ func (t *Tuner) bestSoak(r routes.Route, with func(hours float64, after string) 
 			}
 			if found.score < best.score {
 				best = found
+				best.stand = soak
 			}
 		}
 	}
@@ -203,8 +234,27 @@ func (t *Tuner) bestSoak(r routes.Route, with func(hours float64, after string) 
 	return best, nil
 }
 
+// neighbours reports whether stand i is near or next to it.
+func neighbours(stands []stand, i int, near stand) bool {
+	for k := max(0, i-1); k <= min(len(stands)-1, i+1); k++ {
+		if stands[k] == near {
+			return true
+		}
+	}
+	return false
+}
+
+// afterUse is what may be done with a sieve. One that is activated in the oven
+// before each use is not thrown away after it: using it again costs nothing more.
+func (t *Tuner) afterUse() []string {
+	if t.Case.Lot.SieveHistoryK > 0 {
+		return []string{routes.Regenerate}
+	}
+	return []string{routes.Regenerate, routes.Discard}
+}
+
 func (t *Tuner) one(r routes.Route, s routes.Settings) (trial, error) {
-	run, err := t.Case.Run(r, s)
+	run, err := t.Run(r, s)
 	if err != nil {
 		return trial{}, err
 	}
@@ -212,38 +262,40 @@ func (t *Tuner) one(r routes.Route, s routes.Settings) (trial, error) {
 		return trial{}, fmt.Errorf("%w: takes %.3g h, needed within %.3g h", ErrTooSlow, run.HoursTotal, limit)
 	}
 	score, err := t.score(&run)
-	return trial{run, score}, err
+	return trial{run: run, score: score}, err
 }
 
-// hoursOnOffer are the usual stands and the longest that is done in time.
-func (t *Tuner) hoursOnOffer(r routes.Route, with func(float64, string) routes.Settings) ([]float64, error) {
-	limit := t.Case.Lot.NeededWithinS / 3600
-	if limit == 0 {
-		return soakHours, nil
-	}
-	const probe = 1.0
-	run, err := t.Case.Run(r, with(probe, routes.Discard))
-	if err != nil {
-		return nil, err
-	}
-	longest := math.Floor(2*(limit-(run.HoursTotal-probe))) / 2
-	if longest <= 0 {
-		return nil, fmt.Errorf("%w: the other steps take %.3g h, needed within %.3g h", ErrTooSlow, run.HoursTotal-probe, limit)
-	}
-	var hours []float64
-	for _, h := range soakHours {
-		if h < longest {
-			hours = append(hours, h)
+// standsOnOffer are the usual stands, still and stirred, and the longest that is
+// done in time.
+func (t *Tuner) standsOnOffer(r routes.Route, with func(stand, string) routes.Settings) ([]stand, error) {
+	longest := math.Inf(1)
+	if limit := t.Case.Lot.NeededWithinS / 3600; limit > 0 {
+		const probe = 1.0
+		run, err := t.Case.Run(r, with(stand{hours: probe}, routes.Discard))
+		if err != nil {
+			return nil, err
+		}
+		if longest = math.Floor(2*(limit-(run.HoursTotal-probe))) / 2; longest <= 0 {
+			return nil, fmt.Errorf("%w: the other steps take %.3g h, needed within %.3g h", ErrTooSlow, run.HoursTotal-probe, limit)
 		}
 	}
-	return append(hours, longest), nil
+	var stands []stand
+	for _, kind := range []struct {
+		stirred bool
+		hours   []float64
+	}{{false, soakHours}, {true, stirredHours}} {
+		for _, h := range kind.hours {
+			if h < longest {
+				stands = append(stands, stand{h, kind.stirred})
+			}
+		}
+		if longest <= kind.hours[len(kind.hours)-1] {
+			stands = append(stands, stand{longest, kind.stirred})
+		}
+	}
+	return stands, nil
 }
 
-func hasSoak(r routes.Route) bool {
-	for _, s := range r {
-		if s.Kind == steps.Soak {
-			return true
-		}
-	}
-	return false
+func has(r routes.Route, kind steps.Kind) bool {
+	return slices.ContainsFunc(r, func(s routes.Stage) bool { return s.Kind == kind })
 }

@@ -2,7 +2,9 @@ package steps_test
 
 import (
 	"errors"
+	"fmt"
 	"math"
+	"strings"
 	"testing"
 
 	"pgregory.net/rapid"
@@ -54,55 +56,287 @@ func carrierPlan(feed steps.Lot, share float64) steps.CarrierPlan {
 	return steps.CarrierPlan{DoseKg: share * feed.SolventKg, Goal: 500e-6, CarrierLimit: 2000e-6, HeelShare: 0.1, OrganicWater: 1}
 }
 
-func TestCarrierLook(t *testing.T) {
+// withColumn is the usual plan: a few stages between pot and receiver, so that
+// the lowest-boiling mixture reaches it.
+func withColumn(feed steps.Lot, share float64, stages int) steps.CarrierPlan {
+	p := carrierPlan(feed, share)
+	p.Stages, p.RefluxRatio = stages, 3
+	return p
+}
+
+// carrierByFineSteps integrates pot and receiver in equal small portions of
+// vapour (explicit Euler), each condensed and split, with every result taken
+// cold: the balances as they stand, by another method.
+func carrierByFineSteps(t *testing.T, eq *steps.CarrierEquilibrium, feed steps.Lot, plan steps.CarrierPlan, r steps.TrapRig, portions int) (potMol [3]float64, aqueousMol, heatJ float64) {
+	m := eq.Model
+	pot := [3]float64{feed.WaterKg / m.Pure[0].MolarMassKgPerMol, feed.SolventKg / m.Pure[1].MolarMassKgPerMol, plan.DoseKg / m.Pure[2].MolarMassKgPerMol}
+	head := func() (pot1, top thermo.Boiling) {
+		x := thermo.Fractions(pot)
+		for k := range plan.Stages + 1 {
+			b, err := m.Boil(x, eq.PressurePa, thermo.Boiling{})
+			if err != nil {
+				t.Fatal(err)
+			}
+			if k == 0 {
+				pot1 = b
+			}
+			top, x = b, b.Y
+		}
+		return pot1, top
+	}
+	latent := func(b thermo.Boiling) (q float64) {
+		for i, y := range b.Y {
+			q += y * m.Pure[i].HeatOfVaporizationJ.At(b.TempK)
+		}
+		return q
+	}
+	flash := func(z thermo.Fractions) thermo.TernarySplit {
+		s, err := m.Flash(z, eq.ReceiverK)
+		if err != nil {
+			t.Fatal(err)
+		}
+		s, _ = m.Rewet(s, z, eq.ReceiverK, eq.Organic, 1)
+		return s
+	}
+	var held thermo.Fractions
+	dn := (pot[0] + pot[1] + pot[2]) / float64(portions)
+	for { // fill the receiver
+		n := held[0] + held[1] + held[2]
+		if n > 0 && n*m.MolarVolume(thermo.Fractions{held[0] / n, held[1] / n, held[2] / n}, eq.ReceiverK) >= r.FillVolumeM3 {
+			break
+		}
+		b, top := head()
+		for i := range pot {
+			pot[i] -= dn / 4 * top.Y[i]
+			held[i] += dn / 4 * top.Y[i]
+		}
+		heatJ += dn / 4 * latent(b)
+	}
+	n := held[0] + held[1] + held[2]
+	if s := flash(held); s.Exists {
+		aqueousMol = n * s.AqueousShare
+	}
+	for pot[0]*m.Pure[0].MolarMassKgPerMol > plan.Goal*(pot[0]*m.Pure[0].MolarMassKgPerMol+pot[1]*m.Pure[1].MolarMassKgPerMol) {
+		b, top := head()
+		s := flash(top.Y)
+		if !s.Exists {
+			t.Fatal("no second layer")
+		}
+		mid := (b.TempK + eq.ReceiverK) / 2
+		for i := range pot {
+			taken := s.AqueousShare * s.Aqueous[i]
+			pot[i] -= dn * taken
+			heatJ += dn * (top.Y[i] - taken) * m.Pure[i].HeatCapacityJPerMolK.At(mid) * (b.TempK - eq.ReceiverK)
+		}
+		aqueousMol += dn * s.AqueousShare
+		heatJ += dn * latent(b)
+	}
+	return pot, aqueousMol, heatJ
+}
+
+func TestCarrierAgainstFineSteps(t *testing.T) {
 	for _, c := range []struct {
 		solvent, carrier string
 		water, dose      float64
+		stages           int
 	}{
-		{"ethanol", "cyclohexane", 0.05, 0.3}, {"ethanol", "toluene", 0.05, 0.3}, {"2-propanol", "cyclohexane", 0.05, 0.3}, {"2-propanol", "diisopropyl-ether", 0.05, 0.3},
-		{"n-n-dimethylformamide", "toluene", 0.02, 0.1}, {"dimethyl-sulfoxide", "toluene", 0.02, 0.1}, {"pyridine", "toluene", 0.02, 0.2}, {"acetonitrile", "dichloromethane", 0.02, 0.3},
-		{"acetonitrile", "benzene", 0.02, 0.3}, {"1-butanol", "toluene", 0.05, 0.2}, {"tert-butanol", "cyclohexane", 0.05, 0.3}, {"tetrahydrofuran", "dichloromethane", 0.02, 0.3},
-		{"acetic-acid", "n-butyl-acetate", 0.05, 0.2}, {"1-4-dioxane", "cyclohexane", 0.02, 0.2}, {"n-methyl-2-pyrrolidone", "toluene", 0.02, 0.1}, {"acetone", "dichloromethane", 0.02, 0.3},
-		{"2-butanone", "cyclohexane", 0.05, 0.3},
+		{"2-propanol", "diisopropyl-ether", 0.03, 0.4, 4},
+		{"n-n-dimethylformamide", "toluene", 0.02, 0.1, 3},
+		{"acetonitrile", "dichloromethane", 0.02, 0.3, 3},
+		{"2-butanone", "cyclohexane", 0.06, 0.4, 3},
 	} {
-		m, organic, doubt := three(t, c.solvent, c.carrier)
-		eq, err := steps.NewCarrierEquilibrium(m, organic, doubt, 293.15, atmospherePa)
+		eq := carrierEquilibrium(t, c.solvent, c.carrier, 20)
+		feed := carrierLot(eq, 10, c.water)
+		plan := withColumn(feed, c.dose, c.stages)
+		plan.Goal, plan.CarrierLimit = 2000e-6, 0.999 // the trap alone
+		quick := rules
+		quick.ShortestRefluxS = 0
+		o, err := steps.RunCarrier(eq, feed, plan, rig("either"), quick)
 		if err != nil {
-			t.Log(c, err)
+			t.Errorf("%+v: %v", c, err)
 			continue
 		}
-		feed := carrierLot(eq, 10, c.water)
-		for _, pre := range []bool{true} {
-			for _, n := range []int{0, 3, 8} {
-				plan := carrierPlan(feed, c.dose)
-				plan.PreFilled = pre
-				plan.Stages = n
-				if n > 0 {
-					plan.RefluxRatio = 3
-				}
-				o, err := steps.RunCarrier(eq, feed, plan, rig("either"), rules)
-				if err != nil {
-					t.Log(c, n, err)
-					continue
-				}
-				t.Logf("%+v n %v: az %.1f K_c %.3g; %s | out %.0f mg/kg water, %.0f carrier; trap stop %.0f; reflux %.2f h strip %.2f h; lost %.1f %% solvent; points %d; %q", c, n, eq.Azeotrope.TempK-273.15, eq.CarrierVolatility, o.WhyText, o.Out.Water()*1e6, o.Out.Carrier()*1e6,
-					o.Figure("water in the pot when the trap stops"), o.Figure("reflux, each charge"), o.Figure("stripping, each charge"), 100*o.Balance.SolventRemovedKg/o.In.SolventKg, len(o.Course), o.Warnings)
-			}
+		if o.Why != steps.AtTarget {
+			t.Errorf("%+v: %s", c, o.WhyText)
+		}
+		pot, _, heatJ := carrierByFineSteps(t, eq, feed, plan, rig("either"), 20000)
+		name := c.solvent + " with " + c.carrier
+		near(t, name+": reflux hours", o.Figure("reflux, each charge"), heatJ/800/3600, 0.01)
+		near(t, name+": carrier left", o.Course[len(o.Course)-1].Carrier*o.Out.MassKg(), pot[2]*eq.Model.Pure[2].MolarMassKgPerMol, 0.01)
+		near(t, name+": solvent left", o.Out.SolventKg/(1-rules.VapourLossPerDay*o.Figure("reflux, each charge")/24), pot[1]*eq.Model.Pure[1].MolarMassKgPerMol, 0.005)
+	}
+}
+
+// Water, solvent, carrier and heat close, whatever the lot, the dose and the still.
+func TestCarrierBalances(t *testing.T) {
+	var eqs []*steps.CarrierEquilibrium
+	for _, k := range [][2]string{{"ethanol", "cyclohexane"}, {"2-propanol", "toluene"}, {"n-n-dimethylformamide", "toluene"}, {"acetonitrile", "dichloromethane"}, {"1-butanol", "toluene"}} {
+		for _, receiver := range []float64{10, 25} {
+			eqs = append(eqs, carrierEquilibrium(t, k[0], k[1], receiver))
 		}
 	}
-	_ = errors.Is
-	_ = math.Abs
-	_ = rapid.Check
+	ran := 0
+	rapid.Check(t, func(rt *rapid.T) {
+		eq := rapid.SampledFrom(eqs).Draw(rt, "mixture")
+		water := math.Exp(rapid.Float64Range(math.Log(100e-6), math.Log(0.3)).Draw(rt, "ln w"))
+		feed := carrierLot(eq, rapid.Float64Range(1, 40).Draw(rt, "litres"), water)
+		plan := withColumn(feed, rapid.Float64Range(0.05, 1).Draw(rt, "dose"), rapid.IntRange(0, 6).Draw(rt, "stages"))
+		plan.PreFilled = rapid.Bool().Draw(rt, "pre-filled")
+		plan.Goal = water * rapid.Float64Range(0.01, 0.9).Draw(rt, "goal")
+		r := rig("either")
+		r.HeaterW = rapid.Float64Range(300, 4000).Draw(rt, "W")
+		r.Charges = rapid.IntRange(1, 3).Draw(rt, "charges")
+		o, err := steps.RunCarrier(eq, feed, plan, r, rules)
+		if errors.Is(err, steps.ErrNoCarrier) {
+			return
+		}
+		if err != nil {
+			rt.Fatal(err)
+		}
+		ran++
+		b := o.Balance
+		closes(rt, "water", b.WaterInKg, b.WaterOutKg+b.WaterRemovedKg)
+		closes(rt, "solvent", b.SolventInKg, b.SolventOutKg+b.SolventRemovedKg)
+		closes(rt, "carrier", b.CarrierAddedKg, b.CarrierOutKg+b.CarrierRemovedKg)
+		closes(rt, "heat", b.HeatInJ, b.HeatUsedJ)
+		last := o.Course[len(o.Course)-1]
+		if !(o.Out.SolventKg > 0 && o.Out.WaterKg > 0 && o.Out.CarrierKg > 0 && o.HoursTotal > 0 && last.PotK > 300) {
+			rt.Fatalf("%+v", o)
+		}
+		for _, l := range o.Losses {
+			if l.SolventKg < -1e-9*feed.SolventKg {
+				rt.Fatalf("%s: %g kg", l.Cause, l.SolventKg)
+			}
+		}
+	})
+	if ran == 0 {
+		t.Error("no run went through")
+	}
+}
+
+// Ten times finer steps change the result by less than 0.5 %.
+func TestCarrierStepControl(t *testing.T) {
+	for _, k := range [][2]string{{"ethanol", "cyclohexane"}, {"2-propanol", "cyclohexane"}, {"n-n-dimethylformamide", "toluene"}, {"acetonitrile", "benzene"}} {
+		eq := carrierEquilibrium(t, k[0], k[1], 20)
+		feed := carrierLot(eq, 10, 0.05)
+		plan := withColumn(feed, 0.3, 3)
+		a, errA := steps.RunCarrier(eq, feed, plan, rig("either"), rules)
+		plan.StepError = 1e-5
+		b, errB := steps.RunCarrier(eq, feed, plan, rig("either"), rules)
+		if errA != nil || errB != nil {
+			t.Errorf("%v: %v, %v", k, errA, errB)
+			continue
+		}
+		if a.Why != b.Why {
+			t.Errorf("%v: %s against %s", k, a.WhyText, b.WhyText)
+		}
+		near(t, k[0]+": product", a.Out.SolventKg, b.Out.SolventKg, 0.005)
+		near(t, k[0]+": carrier left", a.Out.CarrierKg, b.Out.CarrierKg, 0.005)
+		near(t, k[0]+": carrier lost", a.CarrierLostKg, b.CarrierLostKg, 0.005)
+		near(t, k[0]+": water at the stop of the trap", a.Figure("water in the pot when the trap stops"), b.Figure("water in the pot when the trap stops"), 0.005)
+		near(t, k[0]+": hours", a.HoursTotal, b.HoursTotal, 0.005)
+	}
+}
+
+func TestCarrierRefusals(t *testing.T) {
+	m, organic, doubt := three(t, "acetone", "dichloromethane")
+	if _, err := steps.NewCarrierEquilibrium(m, organic, doubt, 293.15, atmospherePa); !errors.Is(err, steps.ErrNoCarrier) || !strings.Contains(err.Error(), "does not leave") {
+		t.Errorf("dichloromethane from acetone: %v", err)
+	}
+	m, organic, doubt = three(t, "ethanol", "benzene")
+	if _, err := steps.NewCarrierEquilibrium(m, organic, doubt, 277.15, atmospherePa); err == nil || !strings.Contains(err.Error(), "freezes") {
+		t.Errorf("a receiver of benzene at 4 °C: %v", err)
+	}
+	m, organic, doubt = three(t, "methanol", "toluene")
+	if _, err := steps.NewCarrierEquilibrium(m, organic, doubt, 283.15, atmospherePa); err == nil || !strings.Contains(err.Error(), "mix") {
+		t.Errorf("the false gap of methanol and toluene at 10 °C: %v", err)
+	}
+	m, organic, doubt = three(t, "ethanol", "cyclohexane")
+	if _, err := steps.NewCarrierEquilibrium(m, organic, doubt, 340, atmospherePa); err == nil || !strings.Contains(err.Error(), "not below") {
+		t.Errorf("a receiver at 67 °C: %v", err)
+	}
+	eq := carrierEquilibrium(t, "ethanol", "cyclohexane", 20)
+	feed := carrierLot(eq, 10, 0.05)
+	if _, err := steps.RunCarrier(eq, feed, withColumn(feed, 0.3, 5), rig("heavy"), rules); err == nil || !strings.Contains(err.Error(), "light return") {
+		t.Errorf("a heavy return for cyclohexane: %v", err)
+	}
+	if _, err := steps.RunCarrier(eq, feed, carrierPlan(feed, 0.3), rig("either"), rules); err == nil || !strings.Contains(err.Error(), "one liquid") {
+		t.Errorf("no column: %v", err)
+	}
+	small := withColumn(feed, 0.001, 5)
+	small.PreFilled = true
+	if _, err := steps.RunCarrier(eq, feed, small, rig("either"), rules); err == nil || !strings.Contains(err.Error(), "receiver takes") {
+		t.Errorf("a dose smaller than the receiver: %v", err)
+	}
+	dry := withColumn(feed, 0.3, 5)
+	dry.HeelShare = 0
+	if _, err := steps.RunCarrier(eq, feed, dry, rig("either"), rules); err == nil || !strings.Contains(err.Error(), "heel") {
+		t.Errorf("no heel: %v", err)
+	}
+}
+
+// More water in the organic layer leaves a wetter pot, and less time a wetter one.
+func TestCarrierBandAndTime(t *testing.T) {
+	eq := carrierEquilibrium(t, "2-propanol", "diisopropyl-ether", 20)
+	feed := carrierLot(eq, 10, 0.05)
+	stops := map[float64]float64{}
+	for _, factor := range []float64{1, 2} {
+		plan := withColumn(feed, 0.3, 3)
+		plan.Goal, plan.OrganicWater = 100e-6, factor
+		o, err := steps.RunCarrier(eq, feed, plan, rig("either"), rules)
+		if err != nil {
+			t.Fatal(err)
+		}
+		stops[factor] = o.Figure("water in the pot when the trap stops")
+	}
+	if !(stops[2] > 1.2*stops[1]) {
+		t.Errorf("the trap stops at %.0f mg/kg, with twice the water in the organic layer at %.0f", stops[1], stops[2])
+	}
+	plan := withColumn(feed, 0.3, 3)
+	plan.LongestS = 1800
+	o, err := steps.RunCarrier(eq, feed, plan, rig("either"), rules)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if o.Why != steps.AtTime || o.Figure("water in the pot when the trap stops") < stops[1] {
+		t.Errorf("half an hour: %s, %.0f mg/kg", o.Why, o.Figure("water in the pot when the trap stops"))
+	}
+}
+
+// The dose that is chosen reaches the goal with less lost than the doses beside it.
+func TestChooseCarrierDose(t *testing.T) {
+	eq := carrierEquilibrium(t, "n-n-dimethylformamide", "toluene", 20)
+	feed := carrierLot(eq, 10, 0.02)
+	plan := withColumn(feed, 0, 5)
+	best, err := steps.ChooseCarrierDose(eq, feed, plan, rig("either"), rules)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if best.Out.Water() > plan.Goal || best.Out.Carrier() > plan.CarrierLimit*1.001 {
+		t.Errorf("%.0f mg/kg of water and %.0f of carrier are left", best.Out.Water()*1e6, best.Out.Carrier()*1e6)
+	}
+	for _, share := range steps.CarrierDoses {
+		plan.DoseKg = share * feed.SolventKg
+		o, err := steps.RunCarrier(eq, feed, plan, rig("either"), rules)
+		if err == nil && o.Out.Water() <= plan.Goal && o.Balance.SolventRemovedKg+o.CarrierLostKg < best.Balance.SolventRemovedKg+best.CarrierLostKg-1e-9 {
+			t.Errorf("a dose of %.2g kg loses less than %.2g kg", plan.DoseKg, best.CarrierKg)
+		}
+	}
 }
 
 func BenchmarkCarrier(b *testing.B) {
-	eq := carrierEquilibrium(b, "ethanol", "cyclohexane", 20)
-	feed := carrierLot(eq, 10, 0.05)
-	for b.Loop() {
-		p := carrierPlan(feed, 0.3)
-		p.Stages, p.RefluxRatio = 5, 3
-		if _, err := steps.RunCarrier(eq, feed, p, rig("either"), rules); err != nil {
-			b.Fatal(err)
-		}
+	for _, c := range []struct {
+		solvent, carrier string
+		stages           int
+	}{{"n-n-dimethylformamide", "toluene", 3}, {"ethanol", "cyclohexane", 3}, {"1-butanol", "toluene", 0}} {
+		b.Run(fmt.Sprintf("%s with %s, %d stages", c.solvent, c.carrier, c.stages), func(b *testing.B) {
+			eq := carrierEquilibrium(b, c.solvent, c.carrier, 20)
+			feed := carrierLot(eq, 10, 0.05)
+			for b.Loop() {
+				if _, err := steps.RunCarrier(eq, feed, withColumn(feed, 0.3, c.stages), rig("either"), rules); err != nil {
+					b.Fatal(err)
+				}
+			}
+		})
 	}
 }

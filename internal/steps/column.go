@@ -148,26 +148,30 @@ func ColumnFor(m *thermo.Mixture, feed Lot, goal float64, sorbent Sorbent, rig C
 	if !(goal > 0 && goal < 1) {
 		return Outcome{}, fmt.Errorf("%w: a goal of %g kg/kg", ErrNoSense, goal)
 	}
-	b, err := newBed(m, feed, sorbent, rig)
-	if err != nil {
-		return Outcome{}, err
-	}
-	if goal >= feed.Water() {
-		return b.run(goal, 0), nil
-	}
-	return b.run(goal, math.Min(b.needed(goal), rig.LongestM)), nil
+	return withCarrier(feed, func(lot Lot) (Outcome, error) {
+		b, err := newBed(m, lot, sorbent, rig)
+		if err != nil {
+			return Outcome{}, err
+		}
+		if goal >= lot.Water() {
+			return b.run(goal, 0), nil
+		}
+		return b.run(goal, math.Min(b.needed(goal), rig.LongestM)), nil
+	})
 }
 
 // ColumnOver pumps a lot through a bed of bedKg. Goal (kg/kg) is where the bed is
 // said to break through.
 func ColumnOver(m *thermo.Mixture, feed Lot, bedKg, goal float64, sorbent Sorbent, rig ColumnRig) (Outcome, error) {
-	b, err := newBed(m, feed, sorbent, rig)
-	if err != nil {
-		return Outcome{}, err
-	}
-	length := b.length(bedKg)
-	if !(length > 0 && length <= rig.LongestM) {
-		return Outcome{}, fmt.Errorf("%w: %.4g kg make a bed of %.3g m; the tube takes up to %.3g m", ErrNoColumn, bedKg, length, rig.LongestM)
-	}
-	return b.run(goal, length), nil
+	return withCarrier(feed, func(lot Lot) (Outcome, error) {
+		b, err := newBed(m, lot, sorbent, rig)
+		if err != nil {
+			return Outcome{}, err
+		}
+		length := b.length(bedKg)
+		if !(length > 0 && length <= rig.LongestM) {
+			return Outcome{}, fmt.Errorf("%w: %.4g kg make a bed of %.3g m; the tube takes up to %.3g m", ErrNoColumn, bedKg, length, rig.LongestM)
+		}
+		return b.run(goal, length), nil
+	})
 }

@@ -3,6 +3,8 @@ package steps
 import (
 	"fmt"
 	"math"
+
+	"parch/internal/quantity"
 )
 
 // Activation is what was done to a sieve before it is used.
@@ -69,8 +71,8 @@ func ResidualLoading(sorbent Sorbent, a Activation, p Pickup) (Residual, error) 
 	}
 	r := Residual{Low: after(0), KgPerKg: after(1), High: after(2), OvenKgPerKg: oven}
 	r.AddedKgPerKg = r.KgPerKg - oven
-	r.Notes = append(r.Notes, fmt.Sprintf("the oven leaves %.2g g/100 g (isotherm at %.0f °C, %.3g Pa of water); handling and standing add %.2g g/100 g, which is assumed: %.2g to %.2g in all",
-		100*oven, a.OvenK-273.15, a.ovenWaterPa(), 100*r.AddedKgPerKg, 100*r.Low, 100*r.High))
+	r.Notes = append(r.Notes, fmt.Sprintf("the oven leaves %.2g g/100 g (isotherm at %.0f °C, %s Pa of water); handling and standing add %.2g g/100 g, which is assumed: %.2g to %.2g in all",
+		100*oven, a.OvenK-273.15, quantity.Significant(a.ovenWaterPa(), 3), 100*r.AddedKgPerKg, 100*r.Low, 100*r.High))
 	if a.OvenK < lowestActivationK {
 		r.Notes = append(r.Notes, fmt.Sprintf("%.0f °C does not activate a sieve: in room air it can end wetter than it began", a.OvenK-273.15))
 	}

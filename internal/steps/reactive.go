@@ -19,6 +19,7 @@ type ReactiveAgent struct {
 	ClassActivity     float64 // of water at 25 °C, as agents of this kind are seen to leave
 	ClassBand         float64 // factor either way
 	HandlesBelow      float64 // kg/kg; a wetter lot has to be pre-dried
+	LeastRefluxS      float64 // below it the wet end of the band is claimed; 0: not stated
 }
 
 // Measured is a residual that was found for the pair in print.
@@ -93,7 +94,7 @@ type residual struct {
 // residual takes what was measured for the pair, else the activity that agents of
 // this kind leave with their band. Equilibrium says nothing here: it lies many
 // decades lower.
-func (a ReactiveAgent) residual(m *thermo.Mixture, feed Lot, tK float64, found Measured) (residual, error) {
+func (a ReactiveAgent) residual(m *thermo.Mixture, feed Lot, found Measured, rig ReactiveRig) (residual, error) {
 	r := residual{why: AtMeasured}
 	if found.Water > 0 {
 		r.water, r.low, r.high = found.Water, found.Water/orOne(found.Band), found.Water*orOne(found.Band)
@@ -101,7 +102,7 @@ func (a ReactiveAgent) residual(m *thermo.Mixture, feed Lot, tK float64, found M
 	} else {
 		r.why = AtFloor
 		at := func(activity float64) float64 {
-			w, err := WaterAtActivity(m, math.Min(1, activity), tK)
+			w, err := WaterAtActivity(m, math.Min(1, activity), referenceK)
 			if err != nil {
 				return math.NaN()
 			}
@@ -113,6 +114,10 @@ func (a ReactiveAgent) residual(m *thermo.Mixture, feed Lot, tK float64, found M
 		}
 		r.text = fmt.Sprintf("class floor: no measurement for %s in %s; agents of its kind leave a water activity near %.2g, here %s, %s to %s",
 			a.Key, m.Solvent.Key, a.ClassActivity, quantity.FormatWater(r.water), quantity.FormatWater(r.low), quantity.FormatWater(r.high))
+	}
+	if rig.RefluxS < a.LeastRefluxS {
+		r.water = r.high
+		r.text += fmt.Sprintf("; refluxed for less than %.3g h, so %s is taken", a.LeastRefluxS/secondsPerHour, quantity.FormatWater(r.high))
 	}
 	if fed := feed.Water(); r.water >= fed {
 		r.text += "; the lot is no wetter than that and is not dried"

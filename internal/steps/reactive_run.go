@@ -4,12 +4,17 @@ import (
 	"fmt"
 	"math"
 
+	"parch/internal/quantity"
 	"parch/internal/thermo"
 )
 
 // RunReactive boils a lot over a reactive agent and distils it off. The agent is
 // charged over its need; the heel stays with it and goes as reactive waste.
 func RunReactive(m *thermo.Mixture, feed Lot, agent ReactiveAgent, found Measured, rig ReactiveRig) (Outcome, error) {
+	return withCarrier(feed, func(lot Lot) (Outcome, error) { return runReactive(m, lot, agent, found, rig) })
+}
+
+func runReactive(m *thermo.Mixture, feed Lot, agent ReactiveAgent, found Measured, rig ReactiveRig) (Outcome, error) {
 	if err := agent.check(feed, m.Solvent.Key, rig); err != nil {
 		return Outcome{}, err
 	}
@@ -17,7 +22,7 @@ func RunReactive(m *thermo.Mixture, feed Lot, agent ReactiveAgent, found Measure
 	if err != nil {
 		return Outcome{}, err
 	}
-	left, err := agent.residual(m, feed, referenceK, found)
+	left, err := agent.residual(m, feed, found, rig)
 	if err != nil {
 		return Outcome{}, err
 	}
@@ -129,7 +134,7 @@ func (d *distilling) figures(agent ReactiveAgent, c charge, left residual) []Fig
 func reactiveWarnings(agent ReactiveAgent, c charge) []string {
 	w := []string{"the spent agent is reactive waste: hand it to the site's trained waste service under its own rules"}
 	if c.hydrogenNowM3 > 0 {
-		w = append([]string{fmt.Sprintf("%.3g L of hydrogen come off while drying: the vessel is vented to a safe place, never sealed; no ignition source", c.hydrogenNowM3*litrePerM3)}, w...)
+		w = append([]string{fmt.Sprintf("%s of hydrogen come off while drying: the vessel is vented to a safe place, never sealed; no ignition source", quantity.FormatVolume(c.hydrogenNowM3))}, w...)
 	}
 	if c.surplusKg > c.needKg {
 		w = append(w, fmt.Sprintf("%.0f %% of the %s charged is surplus and becomes waste unspent", 100*c.surplusKg/c.chargedKg, agent.Key))

@@ -125,6 +125,12 @@ func TestResidualSaysWhatItRestsOn(t *testing.T) {
 		t.Errorf("class floor %g, a hundredth of the solubility is %g", o.Out.Water(), 1e-2*solubility)
 	}
 	near(t, "high", o.Figure("residual, high"), 10*o.Figure("residual, low")*10, 0.1)
+	hasty := reactive("calcium-hydride")
+	hasty.LeastRefluxS = 4 * 3600 // the pot refluxes for three
+	if o, err = steps.RunReactive(tol, litres(tol, 1, 225e-6), hasty, steps.Measured{}, pot()); err != nil {
+		t.Fatal(err)
+	}
+	near(t, "too short a reflux", o.Out.Water()*1e6, o.Figure("residual, high"), 1e-9)
 	// a residual above what was fed dries nothing
 	o, err = steps.RunReactive(tol, litres(tol, 1, 20e-6), reactive("sodium"), steps.Measured{Water: 31e-6, Source: "memory"}, pot())
 	if err != nil || math.Abs(o.Out.Water()/20e-6-1) > 1e-9 || !strings.Contains(o.WhyText, "is not dried") {

@@ -106,31 +106,37 @@ func (b *saltBath) claimOf(doseKgPerM3 float64) (float64, hydration) {
 
 // RunSalt stirs a dose of dry salt (kg per m3) into a lot and filters it off.
 func RunSalt(m *thermo.Mixture, feed Lot, doseKgPerM3 float64, salt SaltAgent, rules SaltRules, rig SaltRig) (Outcome, error) {
-	b, err := newSaltBath(m, feed, salt, rules, rig)
-	if err != nil {
-		return Outcome{}, err
-	}
-	if err := checkDose(doseKgPerM3); err != nil {
-		return Outcome{}, err
-	}
-	return b.run(doseKgPerM3, math.NaN()), nil
+	return withCarrier(feed, func(lot Lot) (Outcome, error) {
+		b, err := newSaltBath(m, lot, salt, rules, rig)
+		if err := errors.Join(err, checkDose(doseKgPerM3)); err != nil {
+			return Outcome{}, err
+		}
+		return b.run(doseKgPerM3, math.NaN()), nil
+	})
 }
 
 // SaltFor stirs in the least salt that may be claimed to bring a lot to goal
 // (kg/kg), or the largest practical dose where none may.
 func SaltFor(m *thermo.Mixture, feed Lot, goal float64, salt SaltAgent, rules SaltRules, rig SaltRig) (Outcome, error) {
-	b, err := newSaltBath(m, feed, salt, rules, rig)
-	if err != nil {
-		return Outcome{}, err
-	}
-	least, most := 0.0, salt.MaxDoseKgPerM3
-	if goal >= feed.Water() {
-		return b.run(0, goal), nil
+	return withCarrier(feed, func(lot Lot) (Outcome, error) {
+		b, err := newSaltBath(m, lot, salt, rules, rig)
+		if err != nil {
+			return Outcome{}, err
+		}
+		return b.run(b.dose(goal), goal), nil
+	})
+}
+
+// dose is found by bisection: the claim has steps where a pair is used up.
+func (b *saltBath) dose(goal float64) float64 {
+	least, most := 0.0, b.salt.MaxDoseKgPerM3
+	if goal >= b.feed.Water() {
+		return 0
 	}
 	if w, _ := b.claimOf(most); w > goal {
-		return b.run(most, goal), nil
+		return most
 	}
-	for most-least > 1e-9*most { // bisection: the claim has steps where a pair is used up
+	for most-least > 1e-9*most {
 		mid := (least + most) / 2
 		if w, _ := b.claimOf(mid); w <= goal {
 			most = mid
@@ -138,7 +144,7 @@ func SaltFor(m *thermo.Mixture, feed Lot, goal float64, salt SaltAgent, rules Sa
 			least = mid
 		}
 	}
-	return b.run(most, goal), nil
+	return most
 }
 
 // reason says what the claim rests on.

@@ -26,6 +26,10 @@ func SoakSeries(m *thermo.Mixture, feed Lot, charges []Charge, sorbent Sorbent, 
 	if len(charges) == 0 {
 		return Outcome{}, ErrNoCharge
 	}
+	return withCarrier(feed, func(lot Lot) (Outcome, error) { return series(m, lot, charges, sorbent, rig) })
+}
+
+func series(m *thermo.Mixture, feed Lot, charges []Charge, sorbent Sorbent, rig SoakRig) (Outcome, error) {
 	total := Outcome{Kind: Soak, Agent: sorbent.Key, In: feed, Out: feed}
 	for i, c := range charges {
 		if !(total.Out.SolventKg > 0) {

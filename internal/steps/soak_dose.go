@@ -45,6 +45,7 @@ var SoakTimes = []float64{16 * secondsPerHour, 24 * secondsPerHour, 72 * seconds
 // SizeSoak says how many grams of sorbent bring a lot to goal (kg/kg) in each of
 // the times, or that no dose does.
 func SizeSoak(m *thermo.Mixture, feed Lot, goal float64, sorbent Sorbent, rig SoakRig, timesS ...float64) ([]SoakSize, error) {
+	feed.SolventKg, feed.CarrierKg = feed.SolventKg+feed.CarrierKg, 0
 	sizes := make([]SoakSize, 0, len(timesS))
 	for _, timeS := range timesS {
 		b, dose, err := choose(m, feed, goal, timeS, sorbent, rig)

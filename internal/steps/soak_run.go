@@ -1,6 +1,7 @@
 package steps
 
 import (
+	"errors"
 	"fmt"
 	"math"
 
@@ -11,26 +12,24 @@ import (
 // SoakFor stands a lot over the sorbent dose that reaches goal (kg/kg) in timeS,
 // or over the largest practical dose where none does.
 func SoakFor(m *thermo.Mixture, feed Lot, goal, timeS float64, sorbent Sorbent, rig SoakRig) (Outcome, error) {
-	b, dose, err := choose(m, feed, goal, timeS, sorbent, rig)
-	if err != nil {
-		return Outcome{}, err
-	}
-	return b.run(goal, timeS, dose)
+	return withCarrier(feed, func(lot Lot) (Outcome, error) {
+		b, dose, err := choose(m, lot, goal, timeS, sorbent, rig)
+		if err != nil {
+			return Outcome{}, err
+		}
+		return b.run(goal, timeS, dose)
+	})
 }
 
 // SoakOver stands a lot over a given dose (kg per m3 of solvent) for timeS.
 func SoakOver(m *thermo.Mixture, feed Lot, doseKgPerM3, timeS float64, sorbent Sorbent, rig SoakRig) (Outcome, error) {
-	b, err := newBath(m, feed, sorbent, rig)
-	if err != nil {
-		return Outcome{}, err
-	}
-	if err := checkDose(doseKgPerM3); err != nil {
-		return Outcome{}, err
-	}
-	if err := checkTime(timeS); err != nil {
-		return Outcome{}, err
-	}
-	return b.run(math.NaN(), timeS, SoakDose{Capacity: math.NaN(), Speed: math.NaN(), Dose: doseKgPerM3, Enough: true})
+	return withCarrier(feed, func(lot Lot) (Outcome, error) {
+		b, err := newBath(m, lot, sorbent, rig)
+		if err := errors.Join(err, checkDose(doseKgPerM3), checkTime(timeS)); err != nil {
+			return Outcome{}, err
+		}
+		return b.run(math.NaN(), timeS, SoakDose{Capacity: math.NaN(), Speed: math.NaN(), Dose: doseKgPerM3, Enough: true})
+	})
 }
 
 const soakPoints = 25

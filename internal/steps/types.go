@@ -145,6 +145,7 @@ type Condenser struct {
 type Outcome struct {
 	Kind          Kind
 	Agent         string
+	Apparatus     string // key of the piece that was chosen for it, or ""
 	In, Out       Lot
 	Floor         float64 // kg/kg; NaN where the step has none
 	Why           Stop

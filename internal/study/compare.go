@@ -5,6 +5,7 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"slices"
 	"sort"
 
 	"golang.org/x/sync/errgroup"
@@ -32,25 +33,51 @@ func Compare(ctx context.Context, j *job.Job, c *catalog.Catalog, o Options) (*R
 	if err != nil {
 		return nil, err
 	}
-	r := &Report{Version: Version, CatalogDate: c.Date, Job: j, Book: book, Lots: make([]Lot, len(j.Lots)), Warnings: j.Warnings}
-	group, ctx := errgroup.WithContext(ctx)
-	group.SetLimit(8)
-	for i, lot := range j.Lots {
-		group.Go(func() error {
-			l, err := compareLot(ctx, j, lot, c, book, o.Settings[lot.Name])
-			if err != nil {
-				return fmt.Errorf("lot %q: %w", lot.Name, err)
-			}
-			r.Lots[i] = l
-			return nil
-		})
+	r := &Report{Version: Version, CatalogDate: c.Date, Job: j, Book: book, Warnings: j.Warnings}
+	if err := r.compareLots(ctx, c, o); err != nil {
+		return nil, err
 	}
-	if err := group.Wait(); err != nil {
+	if err := r.buy(c); err != nil {
 		return nil, err
 	}
 	r.Book = usedPrices(r)
 	r.Sources, r.Weak = provenance(r, c)
 	return r, nil
+}
+
+// mostRounds bounds the rounds in which packs and routes settle.
+const mostRounds = 4
+
+// compareLots compares all lots, and again with the prices of the packs that their
+// needs justify, until these stay the same.
+func (r *Report) compareLots(ctx context.Context, c *catalog.Catalog, o Options) error {
+	for round := 1; ; round++ {
+		r.Lots = make([]Lot, len(r.Job.Lots))
+		group, ctx := errgroup.WithContext(ctx)
+		group.SetLimit(8)
+		for i, lot := range r.Job.Lots {
+			group.Go(func() error {
+				l, err := compareLot(ctx, r.Job, lot, c, r.Book, o.Settings[lot.Name])
+				if err != nil {
+					return fmt.Errorf("lot %q: %w", lot.Name, err)
+				}
+				r.Lots[i] = l
+				return nil
+			})
+		}
+		if err := group.Wait(); err != nil {
+			return err
+		}
+		book, changed, err := r.Book.Justified(costs.MostOfEach(r.plans()))
+		if err != nil || !changed {
+			return err
+		}
+		if round == mostRounds {
+			r.Warnings = append(slices.Clone(r.Warnings), "the choice between packs did not settle: prices are those of the last but one round")
+			return nil
+		}
+		r.Book = book
+	}
 }
 
 func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog, book costs.Book, given map[string]routes.Settings) (Lot, error) {
@@ -70,7 +97,15 @@ func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog
 	}
 	offered, excluded := k.Candidates()
 	l.Excluded = excluded
-	tuner := &search.Tuner{Case: k, Book: book, Objective: search.Objective(j.Objective)}
+	site := costs.NewArrangement(c, j)
+	tuner := &search.Tuner{Case: k, Book: book, Objective: search.Objective(j.Objective), Site: site}
+	if given != nil {
+		offered = withSettings(offered, given)
+	} else {
+		var dropped []routes.Excluded
+		offered, dropped = tuner.Prune(offered)
+		l.Excluded = append(l.Excluded, dropped...)
+	}
 	for _, r := range offered {
 		if err := ctx.Err(); err != nil {
 			return Lot{}, err
@@ -83,15 +118,26 @@ func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog
 		if err != nil {
 			return Lot{}, err
 		}
-		bill, err := book.Bill(run.Uses, run.LitresDelivered, lot.BatchesPerYear, j.Currency)
-		if err != nil {
+		route := Route{ID: r.ID(), Label: k.Label(r), Run: run, Cautions: cautions(k, r), Warnings: runWarnings(k, run)}
+		if err := route.account(k, site, book); err != nil {
 			return Lot{}, fmt.Errorf("%s: %w", r.ID(), err)
 		}
-		l.Routes = append(l.Routes, Route{ID: r.ID(), Label: k.Label(r), Run: run, Bill: bill, Cautions: cautions(k, r), Warnings: runWarnings(k, run)})
+		l.Routes = append(l.Routes, route)
 	}
-	l.Routes, err = ranked(l.Routes, tuner)
+	if l.Routes, err = ranked(l.Routes, tuner); err != nil {
+		return Lot{}, err
+	}
+	if given == nil {
+		l.dropDominated()
+	}
+	l.invest(site)
 	sort.SliceStable(l.Excluded, func(a, b int) bool { return l.Excluded[a].ID < l.Excluded[b].ID })
-	return l, err
+	return l, nil
+}
+
+// withSettings keeps the routes of an earlier run: what is repeated is that run.
+func withSettings(offered []routes.Route, given map[string]routes.Settings) []routes.Route {
+	return slices.DeleteFunc(offered, func(r routes.Route) bool { _, ok := given[r.ID()]; return !ok })
 }
 
 func belowDetection(k *routes.Case) string {
@@ -110,7 +156,7 @@ func carryOut(t *search.Tuner, r routes.Route, given map[string]routes.Settings)
 	if err := s.Fit(r); err != nil {
 		return routes.Run{}, err
 	}
-	return t.Case.Run(r, s)
+	return t.Run(r, s)
 }
 
 // refusal tells a route that the physics or the time refuses from a failure of
@@ -133,7 +179,7 @@ func ranked(all []Route, t *search.Tuner) ([]Route, error) {
 		}
 		perLitre := all[i].Bill.PerLitre.InexactFloat64()
 		all[i].Objective = value
-		entries[i] = search.Entry{ID: all[i].ID, Meets: all[i].Run.Meets, Value: value, CostPerLitre: perLitre, WaterOut: all[i].Run.WaterOut}
+		entries[i] = search.Entry{ID: all[i].ID, Meets: all[i].Run.Meets, NoPrice: !all[i].Bill.Priced(), Value: value, CostPerLitre: perLitre, WaterOut: all[i].Run.WaterOut}
 	}
 	sorted := make([]Route, 0, len(all))
 	for place, i := range search.Order(entries) {

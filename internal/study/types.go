@@ -15,7 +15,8 @@ type Report struct {
 	Job         *job.Job
 	Seed        int64
 	Draws       int
-	Book        costs.Book // prices that the bills use
+	Book        costs.Book   // prices that the bills use
+	Buying      costs.Buying // for the best routes of all lots together
 	Lots        []Lot
 	Sources     []catalog.Source // cited, sorted by id
 	Weak        []Weak           // numbers that rest on memory, practice or assumption
@@ -49,6 +50,8 @@ type Route struct {
 	Objective float64 // value of the job's objective: money per litre, h, kg or kWh
 	Run       routes.Run
 	Bill      costs.Bill
+	Year      *costs.Year // nil where part of it has no price
+	Footprint costs.Footprint
 	Cautions  []catalog.Caution
 	Warnings  []string
 }

@@ -18,7 +18,7 @@ type Boiling struct {
 // none) to start from; it only saves time.
 func (m *Ternary) Boil(x Fractions, pressurePa float64, near Boiling) (Boiling, error) {
 	x = lifted(x)
-	if near.Split.Exists {
+	if near.Split.Exists && near.Split.outer {
 		if split, err := m.split(x, near.TempK, near.Split); err == nil && split.Exists {
 			if b, err := m.boilLayers(x, pressurePa, near.TempK, split); err == nil && b.Split.Exists {
 				return b, nil
@@ -27,7 +27,7 @@ func (m *Ternary) Boil(x Fractions, pressurePa float64, near Boiling) (Boiling, 
 	}
 	tK, y, err := m.bubble(&x, pressurePa, near.TempK)
 	if err != nil {
-		return Boiling{}, err
+		return m.boilApart(x, pressurePa, err)
 	}
 	split, err := m.split(x, tK, TernarySplit{})
 	if err != nil {
@@ -40,6 +40,21 @@ func (m *Ternary) Boil(x Fractions, pressurePa float64, near Boiling) (Boiling, 
 		}
 	}
 	return Boiling{TempK: tK, Y: y}, nil
+}
+
+// boilApart boils a liquid so unstable that as one liquid it would boil far
+// outside the range of the model: as two layers, from half-way up that range.
+func (m *Ternary) boilApart(x Fractions, pressurePa float64, failed error) (Boiling, error) {
+	const startK = 330
+	split, err := m.split(x, startK, TernarySplit{})
+	if err != nil || !split.Exists {
+		return Boiling{}, failed
+	}
+	b, err := m.boilLayers(x, pressurePa, startK, split)
+	if err != nil || !b.Split.Exists {
+		return Boiling{}, failed
+	}
+	return b, nil
 }
 
 // boilLayers solves for the temperature at which two layers boil together, from
@@ -63,15 +78,16 @@ func (m *Ternary) boilLayers(x Fractions, pressurePa, guessK float64, split Tern
 	tK, ok := risingRoot(excess, guessK)
 	if !ok && failed == nil {
 		var err error
-		if tK, err = Brent(excess, guessK-80, guessK+20, 1e-8); err != nil && failed == nil {
+		lo, hi := m.searchRange()
+		if tK, err = Brent(excess, lo, hi, 1e-8); err != nil && failed == nil {
 			return Boiling{}, fmt.Errorf("%s at %.4g kPa: two boiling layers: %w", m.name(), pressurePa/1e3, err)
 		}
 	}
 	if failed != nil {
 		return Boiling{}, failed
 	}
-	if excess(tK); failed != nil || !split.Exists {
-		return Boiling{}, failed
+	if !split.Exists {
+		return Boiling{}, nil
 	}
 	partial, sum := m.partials(&split.Organic, tK)
 	b := Boiling{TempK: tK, Split: split}

@@ -10,6 +10,7 @@ type TernarySplit struct {
 	Exists           bool
 	Organic, Aqueous Fractions // mole fractions; Aqueous is the layer with more water
 	AqueousShare     float64   // of all moles
+	outer            bool      // found from outside: a sound start for a neighbour
 }
 
 // NotConverged says how far an iteration got.
@@ -56,20 +57,21 @@ func (m *Ternary) split(z Fractions, tK float64, guess TernarySplit) (TernarySpl
 	z = lifted(z)
 	l := m.at(tK)
 	search := splitSearch{liquid: &l, z: z}
-	if guess.Exists {
-		search.try(&guess.Aqueous, &guess.Organic)
-		if search.best.Exists {
+	if guess.Exists && guess.outer && search.try(&guess.Aqueous, &guess.Organic) {
+		if search.best.outer = search.best.Aqueous[InWater] > wateryEnough; search.best.outer {
 			return search.best, nil
 		}
+		search.best = TernarySplit{}
 	}
-	starts := l.unstable(&z)
-	if starts.n == 0 {
+	if !l.isUnstable(&z) {
 		return TernarySplit{}, nil
 	}
 	dry, watery := outside(&z)
 	if search.try(&watery, &dry) {
+		search.best.outer = search.best.Aqueous[InWater] > wateryEnough
 		return search.best, nil
 	}
+	starts := l.unstable(&z)
 	for i := range starts.n {
 		search.try(&starts.found[i], &z)
 	}
@@ -78,6 +80,11 @@ func (m *Ternary) split(z Fractions, tK float64, guess TernarySplit) (TernarySpl
 	}
 	return search.best, nil
 }
+
+// wateryEnough is the mole fraction of water of an aqueous layer below which a
+// neighbour's split is not trusted: the search could stay on a false pair of
+// layers, and the result would depend on where it came from.
+const wateryEnough = 0.15
 
 // outside are a layer without water and one that is nearly all water.
 func outside(z *Fractions) (dry, watery Fractions) {
@@ -134,19 +141,24 @@ func lnRatio(a, b *Fractions) (ln Fractions) {
 	return ln
 }
 
-// Iterations of the flash: successive substitution alone at first, then Newton
-// steps, each replaced by a substitution where it finds no way down.
+// Iterations of the flash: successive substitution, from flashSubstitutions on
+// Newton's method where the Gibbs energy is convex, and from flashPatience on
+// damped Newton steps everywhere.
 const (
 	flashSubstitutions = 5
-	flashIterations    = 200
-	flashNear          = 0.05 // residual below which Newton's method starts at once
+	flashPatience      = 60
+	flashIterations    = 250
 	flashTolerance     = 1e-10
+	flashNear          = 0.05 // residual below which Newton's method starts at once
+	flashRest          = 3    // substitutions after a Newton step that failed
 )
 
 // refine solves ln K_i = ln gamma_i' - ln gamma_i" for the ratios K_i = x_i"/x_i'
 // of two layers, whose amounts follow from the balance (Rachford & Rice, 1952).
 func (l *liquid) refine(z *Fractions, lnK Fractions) (TernarySplit, error) {
 	p, ok := l.layersOf(z, lnK)
+	wait := flashSubstitutions
+	var last Fractions
 	for i := 0; i < flashIterations && ok; i++ {
 		if p.size < flashTolerance {
 			return l.accept(z, &p), nil
@@ -154,21 +166,43 @@ func (l *liquid) refine(z *Fractions, lnK Fractions) (TernarySplit, error) {
 		if largest(&p.lnK) < 1e-6 {
 			return TernarySplit{}, nil // both layers have become the feed
 		}
-		next, better := partition{}, false
-		if i >= flashSubstitutions || p.size < flashNear {
-			next, better = l.newton(z, &p, i > flashSubstitutions+6)
+		if i > flashSubstitutions+3 && !(p.share > 0 && p.share < 1) {
+			break // the feed lies outside the layers, and stays there
 		}
-		if !better {
-			if next, ok = l.layersOf(z, minus(&p.lnK, &p.residual)); !ok {
-				break
+		next, better := partition{}, false
+		if i >= wait || p.size < flashNear {
+			if next, better = l.newton(z, &p, i > flashPatience); !better {
+				wait = i + flashRest
 			}
 		}
+		if !better {
+			next, ok = l.substitute(z, &p, &last)
+		}
+		last = p.residual
 		p = next
 	}
-	if !ok {
+	if !ok || !(p.share > 0 && p.share < 1) {
 		return TernarySplit{}, nil // the balance leaves no room for a second layer
 	}
 	return TernarySplit{}, &NotConverged{"the split into two layers", flashIterations, p.size}
+}
+
+// substitute takes ln K from the activities, and goes further the same way as
+// long as that lowers the Gibbs energy: substitution alone crawls where the
+// energy is flat.
+func (l *liquid) substitute(z *Fractions, p *partition, last *Fractions) (next partition, ok bool) {
+	if next, ok = l.layersOf(z, minus(&p.lnK, &p.residual)); !ok || *last == (Fractions{}) {
+		return next, ok
+	}
+	const farther = 4
+	far := p.lnK
+	for i := range far {
+		far[i] -= farther * p.residual[i]
+	}
+	if q, fine := l.layersOf(z, far); fine && q.share > 0 && q.share < 1 && l.together(&q) < l.together(&next) {
+		return q, true
+	}
+	return next, ok
 }
 
 // partition is a trial split: share is the moles of the layer x" (second).
@@ -230,11 +264,11 @@ func rachfordRice(z, k *Fractions) (beta float64, ok bool) {
 }
 
 // newton takes one step down the Gibbs energy with the amounts v_i in the second
-// layer as unknowns; its gradient is the residual. The Hessian, by differences
-// and scaled by the amounts, is damped until it is positive definite and the
-// step lowers the energy (Levenberg's rule). ok is false where no step does.
-// central asks for the finer differences that a plait point needs.
-func (l *liquid) newton(z *Fractions, p *partition, central bool) (next partition, ok bool) {
+// layer as unknowns; its gradient is the residual. ok is false where the Hessian,
+// by differences and scaled by the amounts, is not positive definite or the step
+// does not lower the energy. patient damps the Hessian until one does
+// (Levenberg's rule), with the finer differences that a plait point needs.
+func (l *liquid) newton(z *Fractions, p *partition, patient bool) (next partition, ok bool) {
 	if !(p.share > 0 && p.share < 1) {
 		return next, false
 	}
@@ -244,12 +278,16 @@ func (l *liquid) newton(z *Fractions, p *partition, central bool) (next partitio
 		scale[i] = math.Sqrt(amount[i] * (z[i] - amount[i]) / z[i])
 		slope[i] = scale[i] * p.residual[i]
 	}
-	hessian, ok := l.curvature(z, p, &amount, &scale, central)
+	hessian, ok := l.curvature(z, p, &amount, &scale, patient)
 	if !ok {
 		return next, false
 	}
 	energy := l.together(p)
-	for damping := 0.0; damping < 1e6; damping = math.Max(1e-8, 10*damping) {
+	most := 0.0
+	if patient {
+		most = 1e6
+	}
+	for damping := 0.0; damping <= most; damping = math.Max(1e-8, 10*damping) {
 		step, definite := solveDefinite(hessian, damping, slope)
 		if !definite {
 			continue
@@ -348,9 +386,9 @@ func (l *liquid) accept(z *Fractions, p *partition) TernarySplit {
 		return TernarySplit{}
 	}
 	if p.first[InWater] > p.second[InWater] {
-		return TernarySplit{true, p.second, p.first, 1 - p.share}
+		return TernarySplit{Exists: true, Organic: p.second, Aqueous: p.first, AqueousShare: 1 - p.share}
 	}
-	return TernarySplit{true, p.first, p.second, p.share}
+	return TernarySplit{Exists: true, Organic: p.first, Aqueous: p.second, AqueousShare: p.share}
 }
 
 func largest(v *Fractions) float64 {

@@ -7,17 +7,6 @@ import (
 	"parch/internal/thermo"
 )
 
-func organicLayers(t testing.TB) map[[2]string]*thermo.OrganicLayer {
-	all := map[[2]string]*thermo.OrganicLayer{}
-	for _, r := range table(t, "organic_layer.csv") {
-		all[[2]string{r["alcohol"], r["carrier"]}] = &thermo.OrganicLayer{
-			W0: r.number(t, "w0"), P0: r.number(t, "p0"), P1: r.number(t, "p1"), P2: r.number(t, "p2"),
-			RMin: r.number(t, "r_min"), RMax: r.number(t, "r_max"), Factor: r.number(t, "factor_fit"),
-		}
-	}
-	return all
-}
-
 func masses(t testing.TB, r row, layer string) thermo.Fractions {
 	return thermo.Fractions{r.number(t, layer+"_w_water"), r.number(t, layer+"_w_alcohol"), r.number(t, layer+"_w_carrier")}
 }
@@ -27,7 +16,7 @@ func masses(t testing.TB, r row, layer string) thermo.Fractions {
 // nine pairs of ten.
 func TestWaterInOrganicLayers(t *testing.T) {
 	const factor = 1.5
-	layers := organicLayers(t)
+	layers := load(t).Layers
 	squares, count := map[[2]string]float64{}, map[[2]string]int{}
 	for _, r := range table(t, "tie_lines.csv") {
 		k := [2]string{r["alcohol"], r["carrier"]}
@@ -57,8 +46,11 @@ func TestWaterInOrganicLayers(t *testing.T) {
 
 // The same tie-lines against the flash of sets fitted together: mixing both
 // published layers half and half must give back the water of the organic one.
+// The sets of quality B miss it by up to 1.74, methanol and benzene by 1.84. The
+// set of isobutanol and cyclohexane shows a false third liquid (28 % water) and
+// is no use for a flash: its organic layers come from the correlation.
 func TestTieLinesOfFittedTernaries(t *testing.T) {
-	const factor = 1.5
+	const factor = 2
 	mixtures := fittedTogether(t)
 	squares, count := map[[2]string]float64{}, map[[2]string]int{}
 	for _, r := range table(t, "tie_lines.csv") {
@@ -83,21 +75,22 @@ func TestTieLinesOfFittedTernaries(t *testing.T) {
 		squares[k] += d * d
 		count[k]++
 	}
-	good := 0
 	for k, sum := range squares {
 		rms := math.Exp(math.Sqrt(sum / float64(count[k])))
 		t.Logf("%s, %s: factor %.2f over %d tie-lines", k[0], k[1], rms, count[k])
-		if rms <= factor {
-			good++
+		if rms > factor && k != [2]string{"isobutanol", "cyclohexane"} {
+			t.Errorf("%s, %s: factor %.2f over %d tie-lines", k[0], k[1], rms, count[k])
 		}
 	}
-	t.Logf("%d of %d triples within a factor %g", good, len(squares), factor)
+	if len(squares) < 18 {
+		t.Errorf("%d triples", len(squares))
+	}
 }
 
 // Moving water into the organic layer keeps the balance and meets the correlation.
 func TestRewet(t *testing.T) {
 	k := [2]string{"ethanol", "cyclohexane"}
-	m, layer := fromPairs(t)[k], organicLayers(t)[k]
+	m, layer := fromPairs(t)[k], &load(t).Layers[k].OrganicLayer
 	const tK = 293.15
 	z := m.Mole(thermo.Fractions{0.05, 0.30, 0.65})
 	s, err := m.Flash(z, tK)

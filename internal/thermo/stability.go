@@ -14,21 +14,41 @@ type unstableTrials struct {
 // nearly pure water, a solvent-rich and a nearly pure carrier start. No trial
 // found means that z is stable as far as these starts can tell.
 func (l *liquid) unstable(z *Fractions) (t unstableTrials) {
-	plane := l.lnGamma(z)
-	for i := range plane {
-		plane[i] += math.Log(z[i])
-	}
+	plane := l.plane(z)
 	for start := range z {
-		trial := Fractions{}
-		for i := range trial {
-			trial[i] = 0.01 * z[i]
-		}
-		trial[start] += 0.99
-		if y, distance, ok := l.descend(z, &plane, trial); ok {
+		if y, distance, ok := l.descend(z, &plane, trialFrom(z, start)); ok {
 			t.add(y, distance)
 		}
 	}
 	return t
+}
+
+// isUnstable is unstable as far as the first trial found.
+func (l *liquid) isUnstable(z *Fractions) bool {
+	plane := l.plane(z)
+	for start := range z {
+		if _, _, ok := l.descend(z, &plane, trialFrom(z, start)); ok {
+			return true
+		}
+	}
+	return false
+}
+
+func (l *liquid) plane(z *Fractions) Fractions {
+	plane := l.lnGamma(z)
+	for i := range plane {
+		plane[i] += math.Log(z[i])
+	}
+	return plane
+}
+
+// trialFrom is nearly pure in one component, with some of the feed.
+func trialFrom(z *Fractions, component int) (trial Fractions) {
+	for i := range trial {
+		trial[i] = 0.01 * z[i]
+	}
+	trial[component] += 0.99
+	return trial
 }
 
 func (t *unstableTrials) add(y Fractions, distance float64) {
@@ -42,34 +62,71 @@ func (t *unstableTrials) add(y Fractions, distance float64) {
 }
 
 const (
-	stabilityIterations = 400
+	stabilityIterations = 300
 	leastDistance       = 1e-10 // below the plane, in units of RT
 )
 
-// descend substitutes ln Y_i = plane_i - ln gamma_i(Y) until the trial settles;
-// ok where it settles below the plane and away from the feed.
+// descend substitutes ln Y_i = plane_i - ln gamma_i(Y) until the trial settles,
+// speeding up a steady approach; ok where it settles below the plane. A trial on
+// its way back to the feed, about which the distance is a parabola, is given up
+// early (Michelsen & Mollerup, Thermodynamic Models (2007), chapter 9).
 func (l *liquid) descend(z, plane *Fractions, y Fractions) (trial Fractions, distance float64, ok bool) {
-	for range stabilityIterations {
-		ln := l.lnGamma(&y)
-		var next Fractions
-		var sum float64
-		for i := range next {
-			next[i] = math.Exp(plane[i] - ln[i])
-			sum += next[i]
+	var ln, last Fractions // ln Y and the step before
+	for i := range y {
+		ln[i] = math.Log(y[i])
+	}
+	for round := range stabilityIterations {
+		gamma := l.lnGamma(&y)
+		var step Fractions
+		distance, slope, size, away := 1.0, 0.0, 0.0, 0.0
+		for i := range y {
+			amount := math.Exp(ln[i])
+			step[i] = plane[i] - gamma[i] - ln[i]
+			distance -= amount * (step[i] + 1)
+			slope -= (amount - z[i]) * step[i]
+			away = math.Max(away, math.Abs(amount-z[i])/z[i])
+			size = math.Max(size, math.Abs(step[i])*(amount/(amount+1e-6)))
 		}
-		var moved, apart float64
-		for i := range next {
-			next[i] /= sum
-			moved = math.Max(moved, math.Abs(next[i]-y[i])/(y[i]+1e-6))
-			apart = math.Max(apart, math.Abs(next[i]-z[i]))
-		}
-		y = next
-		if apart < leastLayerDifference && moved < 0.1 {
+		switch {
+		case away < 0.3 && distance < 1e-3 && math.Abs(2*distance-slope) < 0.2*math.Abs(slope):
 			return y, 0, false // back at the feed
+		case size < 1e-3 && distance < -leastDistance, size < 0.05 && distance < -1e-3:
+			return y, distance, apart(&y, z) > leastLayerDifference
+		case size < 1e-9:
+			return y, 0, false
 		}
-		if moved < 1e-4 || (moved < 0.05 && sum > 1.001) {
-			return y, -math.Log(sum), math.Log(sum) > leastDistance
+		gain := 1.0
+		if round%3 == 2 {
+			gain = stretch(&step, &last)
+		}
+		last = step
+		var sum float64
+		for i := range y {
+			ln[i] += gain * step[i]
+			y[i] = math.Exp(ln[i])
+			sum += y[i]
+		}
+		for i := range y {
+			y[i] /= sum
 		}
 	}
 	return y, 0, false
+}
+
+// stretch is how far a steady approach goes, in steps: 1/(1 - share), where each
+// step is a share of the one before. An approach that swings to and fro (a
+// negative share) is damped by the same rule.
+func stretch(step, last *Fractions) float64 {
+	var along, square float64
+	for i := range step {
+		along += step[i] * last[i]
+		square += last[i] * last[i]
+	}
+	const mostShare = 0.75
+	return 1 / (1 - math.Max(-3, math.Min(along/square, mostShare)))
+}
+
+func apart(a, b *Fractions) float64 {
+	d := minus(a, b)
+	return largest(&d)
 }

@@ -133,7 +133,7 @@ func (m *Ternary) bubble(x *Fractions, pressurePa, guessK float64) (tK float64, 
 // risingRoot finds the root of a function that rises with temperature by about
 // a few per cent per kelvin, by the secant method from a guess (0: none).
 func risingRoot(f func(float64) float64, guessK float64) (tK float64, ok bool) {
-	const typicalSlope, longestStepK = 0.035, 60.0
+	const typicalSlope, longestStepK = 0.035, 40.0
 	t := guessK
 	if !(t > 0) {
 		t = 350
@@ -141,12 +141,9 @@ func risingRoot(f func(float64) float64, guessK float64) (tK float64, ok bool) {
 	value := f(t)
 	slope := typicalSlope
 	for range 30 {
-		step := -value / slope
-		if !(math.Abs(step) < longestStepK) {
-			return math.NaN(), false
-		}
+		step := math.Max(-longestStepK, math.Min(longestStepK, -value/slope))
 		t += step
-		if math.Abs(step) < 1e-8 {
+		if math.Abs(step) < 1e-6 {
 			return t, true
 		}
 		next := f(t)

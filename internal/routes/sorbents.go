@@ -1,0 +1,116 @@
+package routes
+
+import (
+	"fmt"
+	"math"
+	"slices"
+
+	"parch/catalog"
+	"parch/internal/quantity"
+	"parch/internal/steps"
+)
+
+func (c *Case) runSoak(lot steps.Lot, goal float64, agent string, choice choice) (steps.Outcome, error) {
+	if err := nothingLeft(lot, goal); err != nil {
+		return steps.Outcome{}, err
+	}
+	o, err := steps.SoakFor(c.Mixture, lot, goal, choice.soakHours*3600, c.sorbent(agent, choice.after), c.soakRig(choice.stirred))
+	if err == nil && choice.stirred {
+		_, vessels := c.vessel()
+		o.EnergyKWh += float64(vessels) * c.practice("stirrer-power") * choice.soakHours / 1e3
+	}
+	return o, err
+}
+
+// nothingLeft refuses a sieve on a lot that is at its goal already.
+func nothingLeft(lot steps.Lot, goal float64) error {
+	if lot.Water() > goal {
+		return nil
+	}
+	return refusal{fmt.Errorf("%s is at or below the %s asked for: nothing is left for a sieve", quantity.FormatWater(lot.Water()), quantity.FormatWater(goal))}
+}
+
+func (c *Case) soakRig(stirred bool) steps.SoakRig {
+	_, vessels := c.vessel()
+	rig := steps.SoakRig{
+		TempK: c.Job.Site.RoomK, DepthM: c.depth(vessels), Vessels: vessels,
+		StillRatePerS: c.Solvent.StillRate.SI, RateDepthM: c.practice("still-rate-depth"),
+		AttendedS: c.practice("soak-attended"), WaterMolarM3: c.practice("water-molar-volume"),
+		Stirred: stirred, RelativeVelocityMS: c.practice("stir-velocity"),
+	}
+	if c.Solvent.Class == "ketone" {
+		rig.CondensationPerS = c.practice("sieve-ketone-water") / 3600
+	}
+	return rig
+}
+
+// sorbent is a sieve of the catalog with the lot's history. A sieve that is
+// used again is sized for its last use.
+func (c *Case) sorbent(agent, after string) steps.Sorbent {
+	a := c.Catalog.Agents[agent]
+	share := 1.0
+	if after == Regenerate {
+		share = math.Pow(1-a.Fade.SI, a.Lives.SI-1)
+	}
+	s := steps.Sorbent{
+		Key: agent, Loading: a.Isotherm.LoadingKgPerKg, DataFromPa: a.Isotherm.LowestPa,
+		ResidualKgPerKg: c.Lot.ResidualLoading, CapacityShare: share, Unfit: c.unfit(a),
+		BeadDiameterM: a.BeadDiameter.SI, BeadKgPerM3: a.BeadDensity.SI, Porosity: a.BeadPorosity.SI, Tortuosity: a.BeadTortuosity.SI,
+		HoldUpM3PerKg: a.HoldUp.SI, MinDoseKgPerM3: c.practice("dose-minimum"), MaxDoseKgPerM3: a.MaxDose.SI,
+	}
+	if pores, ok := a.PoreSpace[c.Solvent.Key]; ok {
+		s.PoreShare = pores.SI
+	}
+	if a.HeatOfUptake != nil && a.HeatCapacity != nil {
+		s.HeatOfSorptionJPerMol, s.HeatCapacityJPerKgK = a.HeatOfUptake.SI, a.HeatCapacity.SI
+	}
+	return s
+}
+
+// alcohols take the surface of oxides: measured loadings lie a factor of 2 to 67
+// under the isotherm.
+var alcohols = []string{"small-alcohol", "alcohol"}
+
+func (c *Case) unfit(a *catalog.Agent) string {
+	if a.Kind == "oxide" && slices.Contains(alcohols, c.Solvent.Class) {
+		return fmt.Sprintf("%s takes the surface of %s; its isotherm does not hold there", c.Solvent.Name, a.Name)
+	}
+	return ""
+}
+
+// runColumn takes the narrowest column that reaches the goal, or the widest.
+func (c *Case) runColumn(lot steps.Lot, goal float64, agent string, choice choice) (steps.Outcome, error) {
+	if err := nothingLeft(lot, goal); err != nil {
+		return steps.Outcome{}, err
+	}
+	var o steps.Outcome
+	for _, column := range c.columns() {
+		var err error
+		if o, err = steps.ColumnFor(c.Mixture, lot, goal, c.sorbent(agent, choice.after), c.columnRig(column)); err != nil {
+			return o, err
+		}
+		o.Apparatus = column.Key
+		if o.Why == steps.AtTarget {
+			break
+		}
+	}
+	return o, nil
+}
+
+// columns of beads, the narrowest first.
+func (c *Case) columns() []*catalog.Apparatus {
+	all := c.pieces("column")
+	slices.SortStableFunc(all, func(a, b *catalog.Apparatus) int {
+		return int(math.Copysign(1, a.Diameter.SI-b.Diameter.SI))
+	})
+	return all
+}
+
+func (c *Case) columnRig(a *catalog.Apparatus) steps.ColumnRig {
+	return steps.ColumnRig{
+		TempK: c.Job.Site.RoomK, DiameterM: a.Diameter.SI, LongestM: a.Length.SI, VoidShare: c.practice("bed-void"),
+		FlowM3S:           c.practice("column-velocity") * math.Pi / 4 * a.Diameter.SI * a.Diameter.SI,
+		RecycleBedVolumes: c.practice("column-recycle"), PumpW: c.practice("pump-power"),
+		SetUpS: c.practice("column-setup"), AttendedShare: c.practice("column-attended-share"), WaterMolarM3: c.practice("water-molar-volume"),
+	}
+}

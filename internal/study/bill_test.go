@@ -1,0 +1,219 @@
+package study_test
+
+import (
+	"math"
+	"os"
+	"strings"
+	"testing"
+
+	"github.com/shopspring/decimal"
+
+	"parch/internal/costs"
+	"parch/internal/steps"
+	"parch/internal/study"
+)
+
+func compareFile(t *testing.T, name string) *study.Report {
+	t.Helper()
+	data, err := os.ReadFile("testdata/" + name)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return compare(t, string(data), study.Options{})
+}
+
+func routeOf(t *testing.T, l *study.Lot, id string) *study.Route {
+	t.Helper()
+	for i := range l.Routes {
+		if l.Routes[i].ID == id {
+			return &l.Routes[i]
+		}
+	}
+	t.Fatalf("no route %s", id)
+	return nil
+}
+
+func lineOf(t *testing.T, r *study.Route, head steps.Head, item string) costs.Line {
+	t.Helper()
+	for _, line := range r.Bill.Lines {
+		if line.Head == head && line.Item == item {
+			return line
+		}
+	}
+	t.Fatalf("%s: no line of %s for %s", r.ID, head, item)
+	return costs.Line{}
+}
+
+// The whole bill of the route "buy" on paper, EUR for one of 40 batches a year.
+//
+// Density of toluene at 294.15 K by Perry's Chemical Engineers' Handbook, 8th ed.
+// (2007), Table 2-32: rho = 0.8792/0.27136^(1+(1-294.15/591.75)^0.29241) kmol/m3
+// = 9.4158 kmol/m3, x 92.14 kg/kmol = 867.6 kg/m3. The reclaimed lot that is given up
+// weighs 18 L x 0.8676 kg/L = 15.616 kg (its 480 mg/kg of water change that by 1 g).
+//
+//	labour    order, receipt, label: 0.2 h (common practice)    x 48          =   9.60
+//	purchase  18 L                                              x 690/20      = 621.00
+//	waste     15.616 kg                                         x 1.35        =  21.08
+//	          15.616 kg / 20 kg = 0.7808 containers             x 8           =   6.25
+//	          a year 40 x 27.33 = 1093; least 4 x 400 = 1600; short by 507/40 =  12.67
+//	          together 1600/40                                                =  40.00
+//	testing   2 injections                                      x 120/100     =   2.40
+//	          0.2 h (common practice)                           x 48          =   9.60
+//	                                                                            ------
+//	a batch                                                                   = 682.60
+//	a litre   682.60 / 18 L                                                   =  37.922
+func TestBillByHand(t *testing.T) {
+	report := compareFile(t, "by-hand-buy.yaml")
+	r := routeOf(t, &report.Lots[0], "buy")
+	for _, c := range []struct {
+		head       steps.Head
+		item, want string
+	}{
+		{steps.Labour, "technician", "9.60"},
+		{steps.Purchase, "toluene-dry", "621.00"},
+		{steps.Waste, "waste-flammable-liquid", "21.08"},
+		{steps.Waste, "waste-container", "6.25"},
+		{steps.Waste, "waste-minimum", "12.67"},
+		{steps.Testing, "karl-fischer", "2.40"},
+		{steps.Testing, "technician", "9.60"},
+	} {
+		if got := lineOf(t, r, c.head, c.item).Amount.StringFixed(2); got != c.want {
+			t.Errorf("%s, %s: %s, want %s", c.head, c.item, got, c.want)
+		}
+	}
+	if len(r.Bill.Lines) != 7 {
+		t.Errorf("%d lines, want 7", len(r.Bill.Lines))
+	}
+	for what, c := range map[string][2]string{
+		"waste":   {r.Bill.ByHead[steps.Waste].StringFixed(2), "40.00"},
+		"a batch": {r.Bill.PerBatch.StringFixed(2), "682.60"},
+		"a litre": {r.Bill.PerLitre.StringFixed(3), "37.922"},
+		"a year":  {r.Bill.PerYear.StringFixed(2), "27304.00"},
+	} {
+		if c[0] != c[1] {
+			t.Errorf("%s: %s, want %s", what, c[0], c[1])
+		}
+	}
+}
+
+// Energy, cooling water and equipment of a trap on paper.
+//
+// Heating 14 L x 0.868 kg/L = 12.15 kg of toluene from 20 °C takes 12.15 kg x
+// 1.86 kJ/kg/K (liquid toluene, mean of 1.69 at 20 °C and 2.03 at 105 °C; handbook
+// values from memory) for each kelvin up to where the wet pot begins to boil. Half of
+// 1.6 kW reaches the liquid (common practice). Then follows one hour of reflux, the
+// least there is. Energy = 1.6 kW x (22.6 kJ/K x (T - 20 °C)/0.8 kW/3600 s + 1 h);
+// cooling water = 2 L/min x 60 min = 0.12 m3 x 4.20 = 0.50.
+//
+// Equipment by annuity at 6 %: capital recovery factor over 5 years 0.23740 (tables
+// of engineering economy). Still 0.23740 x 2400 / 40 = 14.24. Receiver, of which 10 %
+// a year break (common practice): 0.33740 x 90 / 40 = 0.76.
+func TestTrapByHand(t *testing.T) {
+	report := compareFile(t, "by-hand-trap.yaml")
+	r := routeOf(t, &report.Lots[0], "trap")
+	begins := r.Run.Outcomes[0].Figure("boiling temperature at the start")
+	want := 1.6 * (22.6*(begins-20)/0.8/3600 + 1)
+	if kWh := lineOf(t, r, steps.Energy, "electricity").Quantity.InexactFloat64(); math.Abs(kWh/want-1) > 0.01 {
+		t.Errorf("energy %.4g kWh, want %.4g within 1 %%", kWh, want)
+	}
+	for _, c := range []struct {
+		head       steps.Head
+		item, want string
+	}{
+		{steps.CoolingWater, "cooling-water", "0.50"},
+		{steps.Equipment, "still-20l", "14.24"},
+		{steps.Equipment, "receiver-light", "0.76"},
+	} {
+		if got := lineOf(t, r, c.head, c.item).Amount.StringFixed(2); got != c.want {
+			t.Errorf("%s, %s: %s, want %s", c.head, c.item, got, c.want)
+		}
+	}
+	if y := r.Year; !y.Equipment.Equal(decimal.NewFromInt(2490)) {
+		t.Errorf("equipment to buy %s, want 2400 + 90", y.Equipment)
+	}
+}
+
+// A chiller or a loop in place of tap water: the heat is that which the heater
+// brings into the liquid, half of its energy (common practice).
+func TestCoolingAlternatives(t *testing.T) {
+	data, err := os.ReadFile("testdata/by-hand-trap.yaml")
+	if err != nil {
+		t.Fatal(err)
+	}
+	with := func(old, now string) *study.Route {
+		report := compare(t, strings.Replace(string(data), old, now, 1), study.Options{})
+		return routeOf(t, &report.Lots[0], "trap")
+	}
+	tap := with("", "")
+	heater := lineOf(t, tap, steps.Energy, "electricity").Quantity.InexactFloat64()
+
+	chiller := with("room: 20 °C", "room: 20 °C, cooling: chiller")
+	drawn := lineOf(t, chiller, steps.CoolingWater, "electricity").Quantity.InexactFloat64()
+	if math.Abs(drawn-0.7*0.5*heater) > 1e-9 || chiller.Run.CoolingWaterL != 0 {
+		t.Errorf("chiller draws %.6g kWh with %g L of water, want %.6g and none", drawn, chiller.Run.CoolingWaterL, 0.7*0.5*heater)
+	}
+	if more := chiller.Run.EnergyKWh - tap.Run.EnergyKWh; math.Abs(more-drawn) > 1e-9 {
+		t.Errorf("energy rises by %g kWh, want %g", more, drawn)
+	}
+	if math.Abs(chiller.Footprint.TotalKg()-chiller.Run.CO2eKg) > 1e-9 {
+		t.Errorf("emissions %g, run %g", chiller.Footprint.TotalKg(), chiller.Run.CO2eKg)
+	}
+
+	loop := with("room: 20 °C", "room: 20 °C, cooling: loop")
+	if loop.Bill.Priced() || loop.Bill.NoPrice[0] != "loop-cooling" {
+		t.Errorf("a loop without a price: %v", loop.Bill.NoPrice)
+	}
+	data = []byte(strings.Replace(string(data), "prices:\n", "prices:\n  - {item: loop-cooling, price: 0.05 EUR/kWh}\n", 1))
+	heat := lineOf(t, with("room: 20 °C", "room: 20 °C, cooling: loop"), steps.CoolingWater, "loop-cooling")
+	if want := decimal.RequireFromString("0.05").Mul(heat.Quantity); math.Abs(heat.Quantity.InexactFloat64()-0.5*heater) > 1e-9 || !heat.Amount.Equal(want) {
+		t.Errorf("loop takes %s kWh for %s, want %.6g for %s", heat.Quantity, heat.Amount, 0.5*heater, want)
+	}
+}
+
+// Every route of three jobs: heads add up to the total, the search's float price
+// agrees, and the emissions by origin add up to those of the run.
+func TestEveryRouteOfThreeJobs(t *testing.T) {
+	halogenated := `
+date: 2026-12-01
+equipment costing: annuity
+interest: 8 %
+site: {cooling: chiller, waste collections: 12 /yr}
+prices:
+  - {item: waste-minimum, price: 60 EUR, date: 2026-10-01}
+  - {item: waste-container, price: 8 EUR, date: 2026-10-01}
+  - {item: sieve-3a, pack: 1 kg, price: 90 EUR, date: 2025-10-01}
+  - {item: sieve-3a, pack: 5 kg, price: 225 EUR, date: 2026-10-01}
+lots:
+  - {solvent: dichloromethane, batch: 12 L, batches: 30 /yr, water: 1200 mg/kg, target: 50 mg/kg}
+`
+	for name, yaml := range map[string]string{"demo": demo(t), "halogenated": halogenated, "trap": mustRead(t, "testdata/by-hand-trap.yaml")} {
+		report := compare(t, yaml, study.Options{})
+		for _, l := range report.Lots {
+			for _, r := range l.Routes {
+				heads := decimal.Zero
+				for _, amount := range r.Bill.ByHead {
+					heads = heads.Add(amount)
+				}
+				if !heads.Equal(r.Bill.PerBatch) || !r.Bill.PerYear.Equal(r.Bill.PerBatch.Mul(decimal.NewFromFloat(l.Job.BatchesPerYear))) {
+					t.Errorf("%s, %s: heads %s, batch %s, year %s", name, r.ID, heads, r.Bill.PerBatch, r.Bill.PerYear)
+				}
+				float, err := report.Book.PerBatchFloat(r.Run.Uses, l.Job.BatchesPerYear)
+				if err != nil || math.Abs(float/r.Bill.PerBatch.InexactFloat64()-1) > 1e-9 {
+					t.Errorf("%s, %s: search %.15g, bill %s, %v", name, r.ID, float, r.Bill.PerBatch, err)
+				}
+				if f := r.Footprint.TotalKg(); math.Abs(f-r.Run.CO2eKg) > 1e-9*r.Run.CO2eKg {
+					t.Errorf("%s, %s: emissions by origin %g, run %g", name, r.ID, f, r.Run.CO2eKg)
+				}
+			}
+		}
+	}
+}
+
+func mustRead(t *testing.T, path string) string {
+	t.Helper()
+	data, err := os.ReadFile(path)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return string(data)
+}
