@@ -130,7 +130,7 @@ func purchaseText(one *costs.Purchase) string {
 	}
 	for _, o := range one.Orders {
 		if o.Every > 0 {
-			parts = append(parts, fmt.Sprintf("%d of %s every %d days", o.Each, unitAmount(o.Pack.Size.InexactFloat64(), one.Unit), o.Every))
+			parts = append(parts, fmt.Sprintf("delivered %d x %s every %d days", o.Each, unitAmount(o.Pack.Size.InexactFloat64(), one.Unit), o.Every))
 		}
 	}
 	if slices.ContainsFunc(one.Orders, func(o costs.Order) bool { return o.Pack.LeadDays < 0 }) {

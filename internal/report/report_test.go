@@ -73,6 +73,8 @@ const (
 		"energy_kwh agent_kg solvent_lost_l"
 	cautionKeys  = "code level text"
 	excludedKeys = "id reason source"
+	purchaseKeys = "item need_kg_per_year packs total"
+	packKeys     = "size_kg count price"
 	headKeys     = "agent cooling_water energy equipment labour purchase solvent_lost testing waste"
 )
 
@@ -132,6 +134,8 @@ func TestJSONHasTheKeysOfTheContract(t *testing.T) {
 		{[]string{"lots", "routes", "cautions"}, cautionKeys},
 		{[]string{"lots", "routes", "cost_by_head"}, headKeys},
 		{[]string{"lots", "excluded"}, excludedKeys},
+		{[]string{"purchases"}, purchaseKeys},
+		{[]string{"purchases", "packs"}, packKeys},
 	} {
 		if diff := cmp.Diff(strings.Fields(c.want), strings.Fields(keysOf(t, out.Bytes(), c.path...))); diff != "" {
 			t.Errorf("%v (-want +got):\n%s", c.path, diff)

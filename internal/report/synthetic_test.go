@@ -21,11 +21,32 @@ func synthetic() *study.Report {
 		Job:         &job.Job{File: "job.yaml", Title: "Made up", Currency: "EUR", Objective: "cost"},
 		Book: costs.Book{
 			"technician": {Item: "technician", Own: true},
-			"sieve-3a":   {Item: "sieve-3a", Indicative: true},
+			"sieve-3a":   {Item: "sieve-3a", Indicative: true, Flag: costs.Indicative, Date: "2026-12-01"},
+			"toluene":    {Item: "toluene", Own: true, Flag: costs.Old, Date: "2025-03-01", Packs: make([]costs.Pack, 2)},
 		},
+		Buying:   buying(),
 		Lots:     []study.Lot{rankedLot(), hopelessLot(), dryLot()},
 		Weak:     []study.Weak{{What: "share of heat that reaches the liquid", Value: "0.5", Confidence: "common practice"}},
 		Warnings: []string{"job.yaml:9: stock: not used yet"},
+	}
+}
+
+func buying() costs.Buying {
+	d := decimal.RequireFromString
+	large := costs.Pack{Size: d("5"), Price: d("148"), PerUnit: d("29.6"), Minimum: 1, LeadDays: 14, Supplier: "+49 Nord, Ost", Date: "2026-10-01"}
+	small := costs.Pack{Size: d("1"), Price: d("40"), PerUnit: d("40"), Minimum: 1, LeadDays: -1}
+	return costs.Buying{
+		FirstBatchDay: 14,
+		Purchases: []costs.Purchase{
+			{Item: "karl-fischer", Label: "reagent", Unit: "test", Process: 80, ToBuy: 80, Priced: true, Total: d("96"), Flag: costs.Undated, Why: "priced by the unit: no pack sizes are known",
+				Orders: []costs.Order{{Pack: costs.Pack{Price: d("1.2"), PerUnit: d("1.2"), LeadDays: -1}, Count: 1, Amount: d("80"), Cost: d("96"), Each: 1, OrderDay: 14, NeedDay: 14}}},
+			{Item: "sieve-3a", Label: "sieve 3A", Unit: "kg", Specification: "molecular sieve 3A, beads of 2 mm", Process: 12, Safety: 1, Have: 2, ToBuy: 11, KgPerUnit: 1, Priced: true,
+				Total: d("336"), Leftover: 0, Why: "the cheapest of the packs on offer",
+				Orders: []costs.Order{{Pack: large, Count: 2, Amount: d("10"), Cost: d("296"), Each: 1, Every: 152, NeedDay: 14}, {Pack: small, Count: 1, Amount: d("1"), Cost: d("40"), Each: 1, OrderDay: 320, NeedDay: 320}}},
+			{Item: "toluene", Label: "toluene", Unit: "litre", Losses: 16, ToBuy: 16, KgPerUnit: 0.867, Why: "no price: the packs are left open",
+				Transport: costs.Transport{UN: "1294", Class: "3", Group: "II", Basis: "from memory"}},
+		},
+		Flags: []string{"flammable: up to 120 L in store at once, the limit is 100 L"},
 	}
 }
 
@@ -62,7 +83,11 @@ func rankedLot() study.Lot {
 					WaterOut: 8e-6, Meets: true, HoursTotal: 26.25, HoursAttended: 1.85, EnergyKWh: 3.1, CoolingWaterL: 200,
 					SolventLostL: 0.4, LitresDelivered: 17.6, AgentKg: map[string]float64{"sieve-3a": 1.5}, WasteKg: 2.2, CO2eKg: 1.5,
 				},
-				Bill:     bill("88.80", "44.40", "7.568182"),
+				Bill: bill("88.80", "44.40", "7.568182"),
+				Year: &costs.Year{Batches: 40, Regenerations: 36, MakeUpLitres: 16, Cost: decimal.NewFromInt(5328), Equipment: decimal.NewFromInt(2490),
+					FirstYear: decimal.NewFromInt(7402), LaterYears: decimal.NewFromInt(4912), PackCost: decimal.NewFromInt(336),
+					Investment: &costs.Investment{Against: "buy", YearlySaving: decimal.NewFromInt(2308), PaybackYears: 1.0789, Years: 5, Interest: 0.06, PresentValue: decimal.RequireFromString("-7232.15")}},
+				Footprint: costs.Footprint{EnergyKg: 0.9, MakingKg: 0.3, BurningKg: 0.2, AgentKg: 0.1, WasteKg: map[string]float64{"waste-aqueous": 0.02, "waste-wet-solid": 2.18}, Sources: []string{"memory"}},
 				Cautions: []catalog.Caution{codes, peroxide},
 				Warnings: []string{"room too warm for the receiver"},
 			},

@@ -118,7 +118,7 @@ func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog
 		if err != nil {
 			return Lot{}, err
 		}
-		route := Route{ID: r.ID(), Label: k.Label(r), Run: run, Cautions: cautions(k, r), Warnings: runWarnings(k, run)}
+		route := Route{ID: r.ID(), Label: k.Label(r), Run: run, Cautions: cautions(k, r), Warnings: append(runWarnings(k, run), ovenWarning(k, run)...)}
 		if err := route.account(k, site, book); err != nil {
 			return Lot{}, fmt.Errorf("%s: %w", r.ID(), err)
 		}
@@ -129,6 +129,9 @@ func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog
 	}
 	if given == nil {
 		l.dropDominated()
+	}
+	if len(l.Routes) > 0 && l.Routes[0].Rank == 1 {
+		l.Routes[0].Warnings = append(l.Routes[0].Warnings, afterwards(k, &l.Routes[0])...)
 	}
 	l.invest(site)
 	sort.SliceStable(l.Excluded, func(a, b int) bool { return l.Excluded[a].ID < l.Excluded[b].ID })

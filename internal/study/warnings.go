@@ -63,6 +63,14 @@ func runWarnings(k *routes.Case, run routes.Run) []string {
 			if k.Lot.FreeWaterM3 > 0 && len(run.Outcomes) == 1 {
 				add("free water goes over the sieve: the soak is computed as if it were dissolved, and the sieve warms; draw it off first")
 			}
+		case steps.Column:
+			add("the column's outlet rests on the diffusion of water into the beads, which may be overstated by a factor of two, and on the sieve's history (%.2g g/100 g)", k.Lot.ResidualLoading*100)
+		case steps.Salt:
+			add("a salt is claimed to take the share of water that it took from ether when it was measured, whatever its equilibrium says")
+		case steps.Reactive:
+			if o.Why == steps.AtFloor {
+				add("nothing measured for %s in %s: the residual is that of agents of its kind, uncertain by a factor of ten", o.Agent, k.Solvent.Name)
+			}
 		case steps.Buy:
 			add("water of the dry grade is its limit as sold, before the bottle is opened; the time of delivery is not counted: order in time")
 		}

@@ -62,7 +62,7 @@ func (m *Ternary) boilApart(x Fractions, pressurePa float64, failed error) (Boil
 func (m *Ternary) boilLayers(x Fractions, pressurePa, guessK float64, split TernarySplit) (Boiling, error) {
 	var failed error
 	excess := func(t float64) float64 {
-		s, err := m.split(x, t, split)
+		s, err := m.follow(x, t, split)
 		if err != nil {
 			failed = err
 			return math.NaN()
@@ -95,6 +95,18 @@ func (m *Ternary) boilLayers(x Fractions, pressurePa, guessK float64, split Tern
 		b.Y[i] = partial[i] / sum
 	}
 	return b, nil
+}
+
+// follow is the split of the same liquid at a temperature close by.
+func (m *Ternary) follow(x Fractions, tK float64, near TernarySplit) (TernarySplit, error) {
+	if near.Exists {
+		l := m.at(tK)
+		if s, err := l.refine(&x, lnRatio(&near.Aqueous, &near.Organic)); err == nil && s.Exists {
+			s.outer = near.outer
+			return s, nil
+		}
+	}
+	return m.split(x, tK, TernarySplit{})
 }
 
 // TernaryAzeotrope is the lowest-boiling mixture of three components.

@@ -72,6 +72,9 @@ func (m *Ternary) split(z Fractions, tK float64, guess TernarySplit) (TernarySpl
 		return search.best, nil
 	}
 	starts := l.unstable(&z)
+	if wet, dry, ok := starts.extremes(); ok && search.try(&wet, &dry) {
+		return search.best, nil
+	}
 	for i := range starts.n {
 		search.try(&starts.found[i], &z)
 	}
@@ -158,6 +161,9 @@ const (
 func (l *liquid) refine(z *Fractions, lnK Fractions) (TernarySplit, error) {
 	p, ok := l.layersOf(z, lnK)
 	wait := flashSubstitutions
+	if p.size < flashNear {
+		wait = 0
+	}
 	var last Fractions
 	for i := 0; i < flashIterations && ok; i++ {
 		if p.size < flashTolerance {
@@ -170,7 +176,7 @@ func (l *liquid) refine(z *Fractions, lnK Fractions) (TernarySplit, error) {
 			break // the feed lies outside the layers, and stays there
 		}
 		next, better := partition{}, false
-		if i >= wait || p.size < flashNear {
+		if i >= wait {
 			if next, better = l.newton(z, &p, i > flashPatience); !better {
 				wait = i + flashRest
 			}

@@ -61,6 +61,24 @@ func (t *unstableTrials) add(y Fractions, distance float64) {
 	t.n++
 }
 
+// extremes are the wettest and the driest trial, where they are far apart.
+func (t *unstableTrials) extremes() (wet, dry Fractions, ok bool) {
+	if t.n < 2 {
+		return wet, dry, false
+	}
+	wet, dry = t.found[0], t.found[0]
+	for _, f := range t.found[1:t.n] {
+		if f[InWater] > wet[InWater] {
+			wet = f
+		}
+		if f[InWater] < dry[InWater] {
+			dry = f
+		}
+	}
+	const far = 0.1
+	return wet, dry, apart(&wet, &dry) > far
+}
+
 const (
 	stabilityIterations = 300
 	leastDistance       = 1e-10 // below the plane, in units of RT
@@ -92,7 +110,7 @@ func (l *liquid) descend(z, plane *Fractions, y Fractions) (trial Fractions, dis
 			return y, 0, false // back at the feed
 		case size < 1e-3 && distance < -leastDistance, size < 0.05 && distance < -1e-3:
 			return y, distance, apart(&y, z) > leastLayerDifference
-		case size < 1e-9:
+		case size < 0.03 && distance > 0.02, size < 1e-3 && distance > 1e-4, size < 1e-9:
 			return y, 0, false
 		}
 		gain := 1.0

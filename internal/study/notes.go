@@ -1,0 +1,60 @@
+package study
+
+import (
+	"fmt"
+	"math"
+
+	"parch/internal/quantity"
+	"parch/internal/routes"
+	"parch/internal/steps"
+)
+
+// ignitionMarginK is kept between an oven and the autoignition temperature of
+// the solvent on the beads (common practice, no source).
+const ignitionMarginK = 50
+
+// afterwards says what becomes of the sieve and of the dry solvent of the best
+// route: when the beads have to be regenerated, and how fast the lot gets wet
+// again.
+func afterwards(k *routes.Case, r *Route) []string {
+	var notes []string
+	add := func(format string, args ...any) { notes = append(notes, fmt.Sprintf(format, args...)) }
+	for place, s := range r.Run.Route {
+		if s.Kind != steps.Soak || r.Run.Outcomes[place].AgentKg == 0 {
+			continue
+		}
+		if life, err := k.Life(&r.Run, place); err == nil {
+			add("the charge of %s used again as it is, batch after batch: %s", k.Catalog.Agents[s.Agent].Name, life.Verdict)
+		}
+	}
+	store := k.Store(&r.Run)
+	if use, err := store.UseBy(k.Lot.Target); err == nil && r.Run.Meets {
+		switch {
+		case use.LeastVolumeM3 > 0 && !math.IsInf(use.LeastVolumeM3, 0):
+			add("kept under room air, the first litre drawn adds %s; draw dry gas in, or stop at %s left: from there it passes the target",
+				quantity.FormatWater(store.PerLitre()), quantity.FormatVolume(use.LeastVolumeM3))
+		case store.AirWaterKgPerM3 > 0:
+			add("kept under room air, the first litre drawn adds %s", quantity.FormatWater(store.PerLitre()))
+		}
+	}
+	return notes
+}
+
+// ovenWarning is shown on every route whose wet beads go into an oven again.
+func ovenWarning(k *routes.Case, r routes.Run) []string {
+	for _, after := range r.Settings.Sieve {
+		if after != routes.Regenerate {
+			continue
+		}
+		margin, ok := k.IgnitionMargin()
+		oven := quantity.FormatTemperature(k.Lot.SieveHistoryK)
+		switch {
+		case !ok && k.Solvent.FlashPoint != nil && k.Lot.SieveHistoryK > 0:
+			return []string{fmt.Sprintf("no autoignition temperature of %s is known: used beads are flushed free of it with dry gas before an oven at %s", k.Solvent.Name, oven)}
+		case ok && margin < ignitionMarginK:
+			return []string{fmt.Sprintf("%s ignites at %s: used beads are flushed free of it with dry gas before an oven at %s, never put in wet",
+				k.Solvent.Name, quantity.FormatTemperature(k.Solvent.Autoignition.SI), oven)}
+		}
+	}
+	return nil
+}
