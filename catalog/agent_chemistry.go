@@ -85,11 +85,15 @@ func checkStoichiometry(n *document.Node, stated, computed float64, unit string)
 
 func (s *shelf) claim(n *document.Node) *Claim {
 	f := n.Map("removed", "except", "least", "dose", "target")
-	return &Claim{
+	c := &Claim{
 		Removed: s.value(f.Need("removed"), quantity.Share), Except: s.bySolvent(f.Get("except"), quantity.Share),
 		Least: s.value(f.Need("least"), quantity.WaterContent),
 		Dose:  s.value(f.Need("dose"), quantity.MassConcentration), Target: s.value(f.Need("target"), quantity.WaterContent),
 	}
+	if c.Least.SI >= c.Target.SI && f.Has("least") && f.Has("target") {
+		f.Get("least").Fail("%q is not below the lowest target, %q", c.Least.Text, c.Target.Text)
+	}
+	return c
 }
 
 // molarGasM3 is the volume of a mole of gas at 20 °C and 101.325 kPa.

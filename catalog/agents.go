@@ -10,24 +10,32 @@ var agentKinds = []string{"sieve", "salt", "reactive", "oxide"}
 func (s *shelf) readAgents() {
 	s.cat.Agents = map[string]*Agent{}
 	scaled := map[*Agent]document.Fields{}
+	entries := map[string]document.Fields{}
 	s.each(agentsFile, func(n *document.Node) {
 		for _, e := range n.Entries() {
 			s.checkKey(e)
-			s.cat.Agents[e.Key] = s.agent(e.Key, e.Node, scaled)
+			entries[e.Key] = e.Node.Map(agentKeys...)
+			s.cat.Agents[e.Key] = s.agent(e.Key, e.Node, entries[e.Key], scaled)
 		}
 	})
 	// A scaled isotherm may stand before the one it is scaled from.
 	for _, key := range keysOf(s.cat.Agents) {
 		if f, ok := scaled[s.cat.Agents[key]]; ok {
 			s.scale(s.cat.Agents[key], f)
+			if len(s.cat.Agents[key].Isotherm.Sites) > 0 {
+				checkUptake(entries[key], s.cat.Agents[key])
+			}
 		}
 	}
 }
 
-func (s *shelf) agent(key string, n *document.Node, scaled map[*Agent]document.Fields) *Agent {
-	f := n.Map("name", "kind", "formula", "isotherm", "loading band", "hydrates", "claim", "reaction", "residuals", "pore space", "window", "useless above",
-		"bulk density", "bead diameter", "bead density", "bead porosity", "bead tortuosity", "hold-up", "lives", "fade", "largest dose",
-		"heat of uptake", "heat capacity")
+var agentKeys = []string{
+	"name", "kind", "formula", "isotherm", "loading band", "hydrates", "claim", "reaction", "residuals", "pore space", "window", "useless above",
+	"bulk density", "bead diameter", "bead density", "bead porosity", "bead tortuosity", "hold-up", "lives", "fade", "largest dose",
+	"heat of uptake", "heat capacity",
+}
+
+func (s *shelf) agent(key string, n *document.Node, f document.Fields, scaled map[*Agent]document.Fields) *Agent {
 	a := &Agent{
 		Key: key, Name: f.Need("name").Text(), Kind: f.Need("kind").OneOf(agentKinds...), Formula: f.Get("formula").Text(), Own: s.owning,
 		UselessAbove:   s.optional(f.Get("useless above"), quantity.Temperature),
@@ -86,6 +94,9 @@ func (s *shelf) checkAgent(n *document.Node, f document.Fields, a *Agent) {
 			f.Get("lives").Fail("%q is less than one use", a.Lives.Text)
 		}
 		checkBead(f, a)
+		if a.Isotherm.Toth != nil || a.Isotherm.Terms != nil || len(a.Isotherm.Sites) > 0 {
+			checkUptake(f, a) // of a scaled one when it is scaled
+		}
 	}
 	switch a.Kind {
 	case "sieve", "oxide":

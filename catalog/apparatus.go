@@ -41,6 +41,7 @@ func (s *shelf) apparatus(key string, n *document.Node) *Apparatus {
 	for _, key := range needed[a.Kind] {
 		f.Need(key)
 	}
+	checkApparatus(f, a)
 	return a
 }
 

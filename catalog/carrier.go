@@ -31,7 +31,10 @@ type TernarySet struct {
 	Extra            thermo.TernaryTerm
 	Quality          string  // A or B
 	TMinK, TMaxK     float64 // of the data
-	Band             float64 // factor on the water of the organic layer: the larger of those of the fit and of tie-lines held back
+	// MissWater and MissAlcohol are by how much ln a differs between the layers of
+	// the published tie-lines, the median of the set.
+	MissWater, MissAlcohol float64
+	Band                   float64 // factor on the water of the organic layer: the larger of those of the fit and of tie-lines held back
 	Origin
 }
 
@@ -45,9 +48,10 @@ type TernarySet struct {
 type OrganicLayer struct {
 	Alcohol, Carrier string
 	thermo.OrganicLayer
-	Distribution bool // whether Q may be used
-	Q            [3]float64
-	SMin, SMax   float64
+	Distribution       bool    // whether Q may be used
+	DistributionFactor float64 // published against computed r, as a factor
+	Q                  [3]float64
+	SMin, SMax         float64
 	Origin
 }
 

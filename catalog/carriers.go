@@ -2,6 +2,7 @@ package catalog
 
 import (
 	"io/fs"
+	"math"
 
 	"parch/internal/document"
 	"parch/internal/quantity"
@@ -40,8 +41,24 @@ func (s *shelf) readDiameters() {
 				e.Node.Fail("%q is outside 0.2 to 1.2 nm", v.Text)
 			}
 			s.cat.Diameters[e.Key] = v
+			if solvent := s.cat.Solvents[e.Key]; solvent != nil {
+				checkDiameter(e.Node, v, solvent)
+			}
 		}
 	})
+}
+
+// checkDiameter compares a kinetic diameter with the cube root of the volume of a
+// molecule in its liquid. Long molecules pass narrow windows, so it may be smaller.
+func checkDiameter(n *document.Node, v Value, solvent *Solvent) {
+	const avogadro, least, most, ambientK = 6.02214076e23, 0.65, 1.4, 298.15
+	if solvent.Density.Check() != nil {
+		return
+	}
+	side := math.Cbrt(solvent.MolarMass.SI / solvent.Density.At(ambientK) / avogadro)
+	if ratio := v.SI / side; !(ratio >= least && ratio <= most) {
+		n.Fail("%q is %.2f times the cube root of the volume of a molecule, %.3g nm; %g to %g is expected", v.Text, ratio, side*1e9, least, most)
+	}
 }
 
 // readTables reads the long tables of phase equilibrium.
@@ -110,7 +127,7 @@ func (s *shelf) readTernaries(fsys fs.FS) {
 			headings = append(headings, pair+h)
 		}
 	}
-	headings = append(headings, "l0", "l1", "l2", "l3", "quality", "t_min_c", "t_max_c", "band", "source", "note")
+	headings = append(headings, "l0", "l1", "l2", "l3", "quality", "t_min_c", "t_max_c", "band", "miss_water", "miss_alcohol", "source", "note")
 	t := readTable(fsys, ternaryFile, headings...)
 	s.tables = append(s.tables, t)
 	for _, r := range t.rows {
@@ -124,8 +141,44 @@ func (s *shelf) readTernaries(fsys fs.FS) {
 			L0: r.number("l0", -most, most), L1: r.number("l1", -most, most), L2: r.number("l2", -most, most), L3: r.number("l3", -most, most),
 		}
 		n.TMinK, n.TMaxK = r.kelvins("t_min_c", "t_max_c")
+		n.MissWater, n.MissAlcohol = r.number("miss_water", 0, 1), r.number("miss_alcohol", 0, 1)
+		s.checkTernary(r, n)
 		s.cat.Ternaries[[2]string{n.Alcohol, n.Carrier}] = n
 	}
+}
+
+// checkTernary compares the pairs of a ternary set with the water pairs of the two
+// solvents, by the activity coefficients at infinite dilution: that of the alcohol
+// is the same, that of the carrier was fitted again and may differ a little in the
+// water of the carrier.
+func (s *shelf) checkTernary(r row, n *TernarySet) {
+	const same, near, coldK, warmK = 0.01, 0.13, 298.15, 343.15
+	alcohol, carrier := s.cat.Solvents[n.Alcohol], s.cat.Solvents[n.Carrier]
+	if alcohol == nil || carrier == nil || alcohol.Water == nil || carrier.Water == nil {
+		return // said already
+	}
+	wa, wc := pairOf(&n.NRTL, thermo.InWater, thermo.InSolvent), pairOf(&n.NRTL, thermo.InWater, thermo.InCarrier)
+	for _, tK := range []float64{coldK, warmK} {
+		for _, x := range []float64{0, 1} {
+			w, a := wa.Pair(x, tK)
+			w2, a2 := alcohol.Water.NRTL.Pair(x, tK)
+			if !(math.Abs(w-w2) < same && math.Abs(a-a2) < same) {
+				r.fail("wa_a12", "the pair of water and %s is not that of the catalog at %.0f °C", n.Alcohol, tK-zeroCelsiusK)
+				return
+			}
+		}
+		w, _ := wc.Pair(0, tK)
+		w2, _ := carrier.Water.NRTL.Pair(0, tK)
+		if !(math.Abs(w-w2) < near+n.MissWater) {
+			r.fail("wc_a12", "ln gamma of a little water in %s is %.2f at %.0f °C, %.2f in the catalog's pair", n.Carrier, w, tK-zeroCelsiusK, w2)
+			return
+		}
+	}
+}
+
+// pairOf takes a pair out of a set of three.
+func pairOf(m *thermo.NRTL, i, j int) thermo.NRTL {
+	return thermo.BinaryNRTL(m.A[i][j], m.B[i][j], m.A[j][i], m.B[j][i], m.Alpha[i][j])
 }
 
 func (s *shelf) readLayers(fsys fs.FS) {
@@ -153,7 +206,7 @@ func (s *shelf) readLayers(fsys fs.FS) {
 // elsewhere the table leaves it empty.
 func (s *shelf) readDistribution(r row, l *OrganicLayer) {
 	const most = 1.3
-	if _, l.Distribution = r.maybe("distribution_band", 1, most); !l.Distribution {
+	if l.DistributionFactor, l.Distribution = r.maybe("distribution_band", 1, most); !l.Distribution {
 		return
 	}
 	for i, h := range []string{"q0", "q1", "q2"} {

@@ -30,7 +30,7 @@ type Check struct {
 	Value      float64 // in Unit
 	Unit       string
 	Limit      float64 // in LimitUnit
-	LimitUnit  string  // "%", "factor" or that of the value
+	LimitUnit  string  // "%" of the value, "factor", "% abs" or that of the value
 	Kind       CheckKind
 	Confidence Confidence
 	Excuse     string // why it may miss its limit; "" for most
@@ -78,7 +78,7 @@ var checkQuantities = map[string]string{
 	"azeotrope-temperature": "°C", "azeotrope-water": "% m/m", "azeotrope-absent": "", // 0: none, as it should be
 	"gamma-water": "", "gamma-solvent-in-carrier": "", "gamma-carrier-in-solvent": "", // at infinite dilution
 	"ternary-azeotrope-temperature": "°C", "ternary-azeotrope-water": "% m/m", "ternary-azeotrope-solvent": "% m/m",
-	"hydrate-activity": "", "loading": "g/100 g",
+	"hydrate-activity": "", "loading": "g/100 g", "share-removed": "%",
 }
 
 var checkFileNames = []string{"pure.csv", "azeotropes.csv", "solubility.csv", "activity.csv", "ternary-azeotropes.csv", "agents.csv"}
@@ -138,7 +138,7 @@ func readCheck(r row, cat *Catalog) Check {
 	if want := checkQuantities[c.Quantity]; c.Unit != want {
 		r.fail("unit", "%q is not the unit of %s, %q", c.Unit, c.Quantity, want)
 	}
-	r.oneOf("limit_unit", "%", "factor", "K", "% m/m", "")
+	r.oneOf("limit_unit", "%", "factor", "K", "% m/m", "% abs", "")
 	if c.Source == "" {
 		r.fail("source", "is empty")
 	}

@@ -103,5 +103,9 @@ func (s *shelf) molarVolume(n *document.Node) Value {
 		f.Get("value").Fail(`%q is not a molar volume up to 1000 cm3/mol; write it like "18.9 cm3/mol"`, v.Text)
 	}
 	v.SI = reading.SI
+	const liquidM3, within = 18.07e-6, 0.1 // of liquid water at 25 °C, 997 kg/m3
+	if v.SI > 0 && (v.SI > liquidM3*(1+within) || v.SI < liquidM3*(1-within)) {
+		f.Get("value").Fail("%q is more than 10 %% from the molar volume of liquid water, 18.07 cm3/mol", v.Text)
+	}
 	return v
 }

@@ -41,14 +41,34 @@ var grades = []string{
 // with adds the keys of an origin to the other keys of an entry.
 func with(keys ...string) []string { return append(keys, "source", "confidence", "note") }
 
-// origin reads where the numbers of an entry come from.
+// origin reads where the numbers of an entry come from. The catalog's own files
+// leave the grade out where it follows from the source; the user's own say it.
 func (s *shelf) origin(f document.Fields) Origin {
-	return Origin{
-		Source:     s.cite(f.Need("source")),
-		Confidence: Confidence(f.Need("confidence").OneOf(grades...)),
-		Note:       f.Get("note").Text(),
-		Own:        s.owning,
+	o := Origin{Source: s.cite(f.Need("source")), Note: f.Get("note").Text(), Own: s.owning}
+	if s.owning || f.Has("confidence") {
+		o.Confidence = Confidence(f.Need("confidence").OneOf(grades...))
+	} else {
+		o.Confidence = gradeOf(o.Source)
 	}
+	return o
+}
+
+// gradeOf is the grade of a number that rests on a source as it stands there.
+func gradeOf(source string) Confidence {
+	switch source {
+	case "memory":
+		return Memory
+	case "common-practice":
+		return CommonPractice
+	case "assumption":
+		return Assumption
+	case stoichiometry:
+		return Derived
+	}
+	if strings.HasSuffix(source, "-fit") {
+		return Fitted
+	}
+	return Published
 }
 
 // originOr is origin where a part of a file has an origin in common.

@@ -14,6 +14,9 @@ func (s *shelf) validate() {
 	s.checkAliases()
 	s.checkPairs()
 	s.checkCitations()
+	s.checkPriceRatios()
+	s.checkHistories()
+	s.checkAssays()
 }
 
 const (
@@ -42,7 +45,9 @@ func (s *shelf) checkSolvent(root *document.Node, f document.Fields, v *Solvent)
 		f.Get("flash point").Fail("must lie below the boiling point")
 	}
 	if f.Has("vapour pressure") && v.VapourPressure.Check() == nil {
-		checkBoiling(f, v, readAllowance(f.Get("known miss"), v))
+		may := readAllowance(f.Get("known miss"), v)
+		checkBoiling(f, v, may)
+		checkLiquid(f, v, may.slope)
 	}
 }
 

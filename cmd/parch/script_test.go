@@ -24,8 +24,9 @@ func TestScript(t *testing.T) {
 	testscript.Run(t, testscript.Params{
 		Dir: "testdata/script",
 		Cmds: map[string]func(*testscript.TestScript, bool, []string){
-			"status": status,
-			"value":  value,
+			"status":   status,
+			"value":    value,
+			"nonsense": nonsense,
 		},
 		Condition: func(name string) (bool, error) {
 			if name == "root" {
@@ -56,6 +57,17 @@ func status(ts *testscript.TestScript, neg bool, args []string) {
 	if got != want {
 		ts.Fatalf("exit status %d, want %d", got, want)
 	}
+}
+
+// nonsense FILE MEGABYTES writes a large file that begins like a catalog.
+func nonsense(ts *testscript.TestScript, neg bool, args []string) {
+	if neg || len(args) != 2 {
+		ts.Fatalf("usage: nonsense file megabytes")
+	}
+	megabytes, err := strconv.Atoi(args[1])
+	ts.Check(err)
+	const line = "solvents: {a: [\n"
+	ts.Check(os.WriteFile(ts.MkAbs(args[0]), []byte(strings.Repeat(line, megabytes<<20/len(line)+1)), 0o644))
 }
 
 // value FILE PATH WANT [TOLERANCE] looks at one value of a JSON file, such as

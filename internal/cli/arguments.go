@@ -12,7 +12,8 @@ import (
 )
 
 // flagsFirst moves the flags of a command before its other arguments, so that
-// they may stand on either side, and refuses a flag that is given twice.
+// they may stand on either side, and refuses a flag that is given twice where it
+// holds one value.
 // Everything after "--" is an argument.
 func flagsFirst(app *cli.App, args []string) ([]string, error) {
 	if len(args) == 0 || strings.HasPrefix(args[0], "-") {
@@ -36,7 +37,7 @@ func flagsFirst(app *cli.App, args []string) ([]string, error) {
 		}
 		flags = append(flags, arg)
 		name, _, joined := strings.Cut(strings.TrimLeft(arg, "-"), "=")
-		if seen[name] {
+		if seen[name] && !repeatable(cmd, name) {
 			return nil, misused(fmt.Sprintf("--%s is given twice", name), "")
 		}
 		seen[name] = true
@@ -48,6 +49,16 @@ func flagsFirst(app *cli.App, args []string) ([]string, error) {
 		}
 	}
 	return slices.Concat(args[:1], flags, []string{"--"}, rest), nil
+}
+
+// repeatable reports whether a flag may be given several times.
+func repeatable(cmd *cli.Command, name string) bool {
+	for _, f := range cmd.Flags {
+		if _, several := f.(*cli.StringSliceFlag); several && slices.Contains(f.Names(), name) {
+			return true
+		}
+	}
+	return false
 }
 
 func takesValue(cmd *cli.Command, name string) bool {

@@ -6,7 +6,6 @@ import (
 
 	"github.com/urfave/cli/v2"
 
-	"parch/catalog"
 	"parch/internal/job"
 	"parch/internal/report"
 )
@@ -15,18 +14,15 @@ func (p *program) check() *cli.Command {
 	return command(cli.Command{
 		Name:        "check",
 		Usage:       "check a job file and list what was left to the catalog",
-		UsageText:   "parch check JOB",
+		UsageText:   "parch check JOB [--catalog FILE]",
 		Description: "JOB is a job file; - reads it from standard input. All problems are listed at once.",
+		Flags:       []cli.Flag{catalogFlag()},
 		Action: func(c *cli.Context) error {
 			path, err := oneArgument(c, "a job file")
 			if err != nil {
 				return err
 			}
-			cat, err := catalog.Load()
-			if err != nil {
-				return failed(err)
-			}
-			j, err := p.readJob(path, false, cat)
+			j, _, err := p.readJob(c, path, false)
 			if err != nil {
 				return err
 			}
@@ -39,10 +35,11 @@ func (p *program) template() *cli.Command {
 	return command(cli.Command{
 		Name:        "new",
 		Usage:       "write a job file to start from",
-		UsageText:   "parch new [--solvent NAME] [--output job.yaml]",
+		UsageText:   "parch new [--solvent NAME] [--output job.yaml] [--catalog FILE]",
 		Description: "An existing file is kept; the exit status is 2 then.",
 		Flags: []cli.Flag{
 			&cli.StringFlag{Name: "solvent", Value: "toluene", Usage: "the `NAME` of the solvent, by key, name or alias"},
+			catalogFlag(),
 			&cli.StringFlag{Name: "output", Usage: "write to `FILE`; else to standard output"},
 		},
 		Action: p.runNew,
@@ -62,9 +59,9 @@ func (p *program) runNew(c *cli.Context) error {
 			return err
 		}
 	}
-	cat, err := catalog.Load()
+	cat, err := p.loadCatalog(c)
 	if err != nil {
-		return failed(err)
+		return err
 	}
 	solvent, err := findSolvent(cat, c.String("solvent"))
 	if err != nil {

@@ -28,6 +28,7 @@ func (p *program) compare() *cli.Command {
 			"written, also where no route reaches a target: then the exit status is 1.",
 		Flags: []cli.Flag{
 			onOff("demo", "run the built-in example, whose prices are invented"),
+			catalogFlag(),
 			&cli.StringFlag{Name: "workbook", Value: defaultWorkbook, Usage: "write the workbook to `F`"},
 			&cli.StringFlag{Name: "json", Usage: "write JSON to `F`; with -, to standard output in place of the text"},
 			&cli.StringFlag{Name: "csv", Usage: "write buying.csv, bills.csv and routes.csv into the folder `DIR`"},
@@ -53,11 +54,7 @@ func (p *program) runCompare(c *cli.Context) error {
 	if err := q.complete(c); err != nil {
 		return err
 	}
-	cat, err := catalog.Load()
-	if err != nil {
-		return failed(err)
-	}
-	j, jobErr := p.readJob(q.job, q.demo, cat)
+	j, cat, jobErr := p.readJob(c, q.job, q.demo)
 	opts, settingsErr := p.readSettings(q.settings)
 	if err := errors.Join(q.outputsFree(), jobErr, settingsErr); err != nil {
 		return err
@@ -114,16 +111,21 @@ func (q *request) outputsFree() error {
 	return errors.Join(problems...)
 }
 
-func (p *program) readJob(path string, demo bool, cat *catalog.Catalog) (*job.Job, error) {
+// readJob reads a job and the catalog that it rests on, own data included.
+func (p *program) readJob(c *cli.Context, path string, demo bool) (*job.Job, *catalog.Catalog, error) {
 	name, data := job.Demo()
 	if !demo {
 		var err error
 		if name, data, err = p.read(path); err != nil {
-			return nil, err
+			return nil, nil, err
 		}
 	}
+	cat, err := p.jobCatalog(c, path, name, data)
+	if err != nil {
+		return nil, nil, err
+	}
 	j, err := job.ReadWith(name, data, cat, beside(path))
-	return j, badFile(err)
+	return j, cat, badFile(err)
 }
 
 func (p *program) readSettings(path string) (study.Options, error) {

@@ -25,7 +25,8 @@ func (p *program) inspect() *cli.Command {
 		Flags: []cli.Flag{
 			&cli.StringFlag{Name: "pressure", Usage: "pressure `P`, 1 to 110 kPa, with its unit (default: the catalog's)"},
 			&cli.StringFlag{Name: "receiver", Usage: "temperature `T` of the trap's receiver, with its unit (default: the catalog's)"},
-			&cli.StringFlag{Name: "carrier", Usage: "not available yet"},
+			&cli.StringFlag{Name: "carrier", Usage: "show the azeotrope of water, the solvent and carrier `C`, a solvent of parch catalog carriers"},
+			catalogFlag(),
 			onOff("json", "print JSON"),
 		},
 		Action: p.runInspect,
@@ -37,20 +38,21 @@ func (p *program) runInspect(c *cli.Context) error {
 	if err != nil {
 		return err
 	}
-	if c.IsSet("carrier") {
-		return misused("--carrier is not available yet", "")
-	}
-	cat, err := catalog.Load()
+	cat, err := p.loadCatalog(c)
 	if err != nil {
-		return failed(err)
+		return err
 	}
 	solvent, solventErr := findSolvent(cat, name)
 	pressurePa, pressureErr := flagQuantity(c, "pressure", quantity.Pressure, cat.Practice["site-pressure"])
 	receiverK, receiverErr := flagQuantity(c, "receiver", quantity.Temperature, cat.Practice["site-receiver"])
-	if err := errors.Join(solventErr, pressureErr, receiverErr); err != nil {
+	carrier, carrierErr := findCarrier(c, cat, solvent)
+	if err := errors.Join(solventErr, carrierErr, pressureErr, receiverErr); err != nil {
 		return err
 	}
 	sheet, err := inspect.Solvent(cat, solvent, pressurePa, receiverK)
+	if err == nil && carrier != "" {
+		err = sheet.AddCarrier(cat, carrier)
+	}
 	if err != nil {
 		return misused(err.Error(), "")
 	}
@@ -70,6 +72,27 @@ func flagQuantity(c *cli.Context, flag string, d quantity.Dimension, otherwise c
 		return 0, misused(fmt.Sprintf("--%s: %s", flag, err), "")
 	}
 	return reading.SI, nil
+}
+
+// findCarrier takes a carrier of the catalog from --carrier; "" where none is asked for.
+func findCarrier(c *cli.Context, cat *catalog.Catalog, solvent *catalog.Solvent) (string, error) {
+	if !c.IsSet("carrier") {
+		return "", nil
+	}
+	typed := c.String("carrier")
+	carrier, err := findSolvent(cat, typed)
+	if err == nil && cat.Carriers[carrier.Key] != nil {
+		if solvent != nil && carrier.Key == solvent.Key {
+			return "", misused(fmt.Sprintf("--carrier: %s cannot carry water out of itself", carrier.Name), "")
+		}
+		return carrier.Key, nil
+	}
+	carriers := slices.Sorted(maps.Keys(cat.Carriers))
+	hint := "carriers: " + strings.Join(carriers, ", ")
+	if near := document.Nearest(typed, carriers); len(near) > 0 && err != nil {
+		hint = "did you mean " + strings.Join(near, " or ") + "?"
+	}
+	return "", misused(fmt.Sprintf("--carrier: %q is not a carrier of the catalog", typed), hint)
 }
 
 // findSolvent finds a solvent by key, name or alias; case does not count.

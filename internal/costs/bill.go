@@ -155,6 +155,16 @@ func (b Book) PerBatchFloat(uses []routes.StageUse, batchesPerYear float64) (flo
 	return total + max(0, least-waste), nil
 }
 
+// Missing names the items among the uses that have no price, as often as they are used.
+func (b Book) Missing(uses []routes.StageUse) (items []string) {
+	for _, use := range uses {
+		if _, priced := b[use.Item]; !priced {
+			items = append(items, use.Item)
+		}
+	}
+	return items
+}
+
 func (b Book) priceOf(use steps.Use) (price Price, priced bool, err error) {
 	if !slices.Contains(steps.Heads, use.Head) {
 		return Price{}, false, fmt.Errorf("%s: %q is not a head of cost", use.Item, use.Head)

@@ -231,3 +231,32 @@ func BenchmarkPerBatchFloat(b *testing.B) {
 		}
 	}
 }
+
+// What is counted per batch costs the same however many batches there are; what is
+// counted per year is shared by them.
+func TestTotalScalesWithBatches(t *testing.T) {
+	rapid.Check(t, func(t *rapid.T) {
+		book := exampleBook()
+		uses := drawUses(t, book, 0)
+		batches := rapid.Float64Range(0.5, 200).Draw(t, "batches")
+		perBatch, perYear := decimal.Zero, decimal.Zero
+		for _, use := range uses {
+			cost := decimal.NewFromFloat(use.Quantity).Round(12).Mul(book[use.Item].PerUnit)
+			if use.PerYear {
+				perYear = perYear.Add(cost)
+			} else {
+				perBatch = perBatch.Add(cost)
+			}
+		}
+		bill, err := book.Bill(uses, 17.6, batches, "EUR")
+		if err != nil {
+			t.Fatal(err)
+		}
+		n := decimal.NewFromFloat(batches).Round(12)
+		want := perBatch.Add(perYear.Div(n))
+		rounding := decimal.New(1, -6) // up to 40 shares, each rounded at the twelfth decimal, times a price of 1200
+		if bill.PerBatch.Sub(want).Abs().GreaterThan(rounding) || !bill.PerYear.Equal(bill.PerBatch.Mul(n)) {
+			t.Fatalf("batch %s, want %s; year %s", bill.PerBatch, want, bill.PerYear)
+		}
+	})
+}

@@ -63,7 +63,7 @@ func defaultPrice(cat *catalog.Catalog, p catalog.Price, j *job.Job) (price Pric
 	if !ok {
 		return Price{}, false, nil
 	}
-	return Price{
+	price = Price{
 		Item:       p.Item,
 		Label:      p.Label,
 		Unit:       p.Unit,
@@ -76,7 +76,13 @@ func defaultPrice(cat *catalog.Catalog, p catalog.Price, j *job.Job) (price Pric
 		Flag:       Indicative,
 		Packs:      []Pack{{Price: perUnit, PerUnit: perUnit, Date: p.Date, Minimum: 1, LeadDays: -1, Flag: Indicative}},
 		Note:       note,
-	}, true, nil
+	}
+	if p.Own { // as good as a price of the job
+		price.Own, price.Indicative, price.Flag = true, false, age(p.Date, "", ReferenceDate(cat, j))
+		price.Packs[0].Flag = price.Flag
+		price.SourceText = "own data: " + price.SourceText
+	}
+	return price, true, nil
 }
 
 // intoCurrency brings a price of the catalog into the currency of the job.

@@ -12,10 +12,13 @@ import (
 )
 
 // PackRule says which of several packs a bill is priced by.
-const PackRule = "where an item has several packs, bills use the lowest price per unit among those whose smallest order is used up within a year, " +
+const PackRule = "where an item has several packs, bills use the lowest price per unit among those whose smallest order is used up within two years, " +
 	"and whose content within its shelf life, by the route that uses most of it; else the smallest order"
 
-const daysPerYear = 365
+const (
+	daysPerYear  = 365
+	horizonYears = 2 // of PackRule: nobody keeps a drum for ten years to save on its price (assumption)
+)
 
 // smallestOrder is the least that can be bought of a pack.
 func (p Pack) smallestOrder() decimal.Decimal {
@@ -25,10 +28,10 @@ func (p Pack) smallestOrder() decimal.Decimal {
 // AnyAmount reports whether the price is for a unit, in any amount.
 func (p Pack) AnyAmount() bool { return p.Size.IsZero() }
 
-// justified reports whether a year's need uses up the smallest order, and a pack
-// before it is too old.
+// justified reports whether a year's need uses up the smallest order in time, and
+// a pack before it is too old.
 func (p Pack) justified(perYear decimal.Decimal) bool {
-	if p.smallestOrder().GreaterThan(perYear) {
+	if p.smallestOrder().GreaterThan(perYear.Mul(decimal.NewFromInt(horizonYears))) {
 		return false
 	}
 	return p.ShelfDays == 0 || p.Size.LessThanOrEqual(perYear.Mul(decimal.NewFromInt(int64(p.ShelfDays))).Div(decimal.NewFromInt(daysPerYear)))

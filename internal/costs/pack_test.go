@@ -30,8 +30,8 @@ func sievePacks() *job.Job {
 	}}
 }
 
-// The pack follows a year's need: what is not used up in a year, or within its
-// shelf life, does not set the price.
+// The pack follows a year's need: what is not used up in two years, or within its
+// shelf life (of the 5 kg pack: one), does not set the price.
 func TestPackThatANeedJustifies(t *testing.T) {
 	book, err := costs.NewBook(exampleCatalog(), sievePacks())
 	if err != nil {
@@ -44,7 +44,7 @@ func TestPackThatANeedJustifies(t *testing.T) {
 		perYear float64
 		want    string
 	}{
-		{0, "90"}, {0.9, "90"}, {1, "90"}, {4.9, "90"}, {5, "45"}, {19.9, "45"}, {20, "30"}, {24.9, "30"}, {25, "10"}, {1000, "10"},
+		{0, "90"}, {0.9, "90"}, {1, "90"}, {4.9, "90"}, {5, "45"}, {9.9, "45"}, {10, "30"}, {12.4, "30"}, {12.5, "10"}, {1000, "10"},
 	} {
 		priced, changed, err := book.Justified(map[string]float64{"sieve-3a": c.perYear})
 		if err != nil {

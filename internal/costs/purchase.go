@@ -234,19 +234,23 @@ func (p *purchaser) kgPerUnit(n Need) float64 {
 func (p *purchaser) specification(item string) string {
 	var parts []string
 	if a := p.cat.Agents[item]; a != nil {
-		parts = append(parts, a.Name)
+		parts = append(parts, strings.TrimSuffix(a.Name, ", beads"))
 		if a.BeadDiameter != nil {
 			parts = append(parts, "beads of "+a.BeadDiameter.Text)
 		}
 		switch a.Kind {
-		case "salt":
-			parts = append(parts, "anhydrous")
+		case "sieve", "oxide":
+			parts = append(parts, "without indicator") // a dye bleeds into some solvents (common practice)
 		case "reactive":
 			parts = append(parts, "reagent grade")
 		}
 	}
 	if s := p.cat.Solvents[solventOf(item)]; s != nil {
-		parts = append(parts, s.Name, "CAS "+s.CAS, p.grade(item))
+		parts = append(parts, s.Name)
+		if s.CAS != "" {
+			parts = append(parts, "CAS "+s.CAS)
+		}
+		parts = append(parts, p.grade(item))
 	}
 	if a := p.cat.Apparatus[item]; a != nil {
 		parts = append(parts, a.Name)

@@ -137,7 +137,7 @@ func TestNoPriceLeavesThePacksOpen(t *testing.T) {
 	if p.Priced || len(p.Orders) != 0 || p.ToBuy != 3 || p.Why != "no price: the packs are left open" {
 		t.Errorf("%+v", p)
 	}
-	if p.Specification != "molecular sieve 3A, beads of 2 mm" {
+	if p.Specification != "molecular sieve 3A, beads of 2 mm, without indicator" {
 		t.Errorf("specification %q", p.Specification)
 	}
 }

@@ -18,7 +18,7 @@ type Price struct {
 	Item, Label string
 	Unit        string // hour, kwh, m3, kg, litre, each, test
 	PerUnit     decimal.Decimal
-	Own         bool   // from the job
+	Own         bool   // from the job or from the user's own catalog
 	Date        string // ISO date
 	Source      string // id of a catalog source, or "job"
 	SourceText  string

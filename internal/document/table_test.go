@@ -86,3 +86,30 @@ func TestTableRefused(t *testing.T) {
 		}
 	}
 }
+
+// FuzzTable holds Table to no panic and printable messages, whatever the file.
+func FuzzTable(f *testing.F) {
+	f.Add([]byte("item;price;supplier\nsieve;1,5 EUR;\"a; b\"\n"))
+	f.Add([]byte("\uFEFFitem,price\r\nx,1.234\r\n"))
+	f.Add([]byte("item\n=1"))
+	f.Fuzz(func(t *testing.T, data []byte) {
+		n, err := document.Table("prices.csv", data, []string{"item", "price", "supplier"}, []string{"price"})
+		if err == nil {
+			for _, row := range n.Items() {
+				fields := row.Map("item", "price", "supplier")
+				fields.Need("item").Text()
+				fields.Get("price").With(" EUR").Money()
+			}
+			err = n.Problems().Err()
+		}
+		var invalid *document.Invalid
+		if err == nil || !errors.As(err, &invalid) {
+			return
+		}
+		for _, line := range invalid.Lines() {
+			if !strings.HasPrefix(line, "prices.csv") || strings.ContainsAny(line, "\n\r\x1b\x00") || len(line) > 3000 {
+				t.Errorf("message %q", line)
+			}
+		}
+	})
+}

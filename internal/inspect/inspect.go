@@ -3,34 +3,42 @@
 package inspect
 
 import (
+	"errors"
 	"fmt"
 	"math"
 	"slices"
 	"strings"
 
 	"parch/catalog"
+	"parch/internal/mixture"
 	"parch/internal/thermo"
 )
 
 // Sheet is what is known of a solvent at a pressure and a receiver temperature.
 type Sheet struct {
-	Solvent       *catalog.Solvent
-	PressurePa    float64
-	ReceiverK     float64
-	BoilingK      float64
-	Azeotrope     thermo.Azeotrope
-	AzeotropeMass float64 // kg/kg water in its vapour; NaN where there is none
-	Solubility    []Solubility
-	GammaInfinite float64 // of water in the solvent at 25 °C
-	Floor         thermo.Floor
-	Pairs         []Pair
-	Sources       []catalog.Source
-	Notes         []string
+	Solvent          *catalog.Solvent
+	PressurePa       float64
+	ReceiverK        float64
+	BoilingK         float64
+	Azeotrope        thermo.Azeotrope
+	AzeotropeTrouble string  // why no azeotrope could be computed; "" for most
+	AzeotropeMass    float64 // kg/kg water in its vapour; NaN where there is none
+	Changes          []Change
+	Solubility       []Solubility
+	GammaInfinite    float64 // of water in the solvent at 25 °C; NaN outside the limits of the model
+	Floor            thermo.Floor
+	Carrier          *Carrier // nil where none was asked for
+	Pairs            []Pair
+	Sources          []catalog.Source
+	Notes            []string
 }
 
 // Solubility is the water that the solvent holds at a temperature, kg/kg; NaN
-// where the two mix in all proportions.
-type Solubility struct{ TempK, Water float64 }
+// where the two mix in all proportions or Outside says why nothing is given.
+type Solubility struct {
+	TempK, Water float64
+	Outside      string
+}
 
 // Pair is what the agent matrix says of a drying agent.
 type Pair struct {
@@ -46,26 +54,27 @@ const kelvinAt0C = 273.15
 
 // Solvent computes the sheet of a solvent.
 func Solvent(c *catalog.Catalog, s *catalog.Solvent, pressurePa, receiverK float64) (*Sheet, error) {
-	if err := thermo.CheckPressure(pressurePa); err != nil {
+	if err := errors.Join(thermo.CheckPressure(pressurePa), CheckReceiver(receiverK)); err != nil {
 		return nil, err
 	}
-	water, ok := c.Solvents["water"]
-	if !ok || s.Water == nil {
+	if s.Water == nil {
 		return nil, fmt.Errorf("no data on water in %s", s.Name)
 	}
-	m := &thermo.Mixture{Water: &water.Pure, Solvent: &s.Pure, NRTL: s.Water.NRTL}
-	sheet := &Sheet{Solvent: s, PressurePa: pressurePa, ReceiverK: receiverK, GammaInfinite: m.GammaInfinite(25 + kelvinAt0C)}
+	m := mixture.Pair(c, s)
+	sheet := &Sheet{Solvent: s, PressurePa: pressurePa, ReceiverK: receiverK, GammaInfinite: math.NaN(), AzeotropeMass: math.NaN()}
+	if m.CheckTemperature(ambientK) == nil {
+		sheet.GammaInfinite = m.GammaInfinite(ambientK)
+	}
 	var err error
 	if sheet.BoilingK, err = thermo.Boil(&s.Pure, pressurePa); err != nil {
 		return nil, err
 	}
-	if sheet.Azeotrope, err = m.FindAzeotrope(pressurePa); err != nil {
-		return nil, err
-	}
-	sheet.AzeotropeMass = math.NaN()
-	if sheet.Azeotrope.Kind != thermo.NoAzeotrope {
+	if sheet.Azeotrope, err = azeotrope(m, pressurePa); err != nil {
+		sheet.Azeotrope, sheet.AzeotropeTrouble = thermo.Azeotrope{Kind: thermo.NoAzeotrope, TempK: math.NaN(), YWater: math.NaN()}, err.Error()
+	} else if sheet.Azeotrope.Kind != thermo.NoAzeotrope {
 		sheet.AzeotropeMass = m.MassFraction(sheet.Azeotrope.YWater)
 	}
+	sheet.Changes = changes(m)
 	if sheet.Solubility, err = solubility(m, sheet.BoilingK); err != nil {
 		return nil, err
 	}
@@ -73,9 +82,27 @@ func Solvent(c *catalog.Catalog, s *catalog.Solvent, pressurePa, receiverK float
 		sheet.Floor = thermo.Floor{Return: thermo.None, Reason: err.Error(), Water: math.NaN()}
 	}
 	sheet.Pairs = pairs(c, s)
-	sheet.Sources = sources(c, s, sheet.Pairs)
-	sheet.Notes = notes(sheet)
+	sheet.addSources(c, origins(s, sheet.Pairs)...)
+	sheet.Notes = append(notes(sheet), sheet.changeNotes(m)...)
+	sheet.Notes = append(sheet.Notes, knownNotes(c, s)...)
 	return sheet, nil
+}
+
+const ambientK = 25 + kelvinAt0C
+
+// Temperatures that a receiver may be asked for. Most of them return nothing, and
+// the sheet says why.
+const (
+	coldestReceiverK = kelvinAt0C - 80
+	hottestReceiverK = kelvinAt0C + 250
+)
+
+// CheckReceiver refuses a receiver that nobody could run.
+func CheckReceiver(tK float64) error {
+	if !(tK >= coldestReceiverK && tK <= hottestReceiverK) {
+		return fmt.Errorf("a receiver at %.4g °C is outside %.0f to %.0f °C", tK-kelvinAt0C, coldestReceiverK-kelvinAt0C, hottestReceiverK-kelvinAt0C)
+	}
+	return nil
 }
 
 // solubility goes from 0 to 80 °C in steps of 10 as far as the solvent is liquid.
@@ -85,14 +112,15 @@ func solubility(m *thermo.Mixture, boilingK float64) (table []Solubility, err er
 		if tK < m.Solvent.MeltingK || tK > boilingK {
 			continue
 		}
-		holds, partly, err := m.Solubility(tK)
-		if err != nil {
+		row := Solubility{TempK: tK, Water: math.NaN()}
+		if err := m.CheckTemperature(tK); err != nil {
+			row.Outside = err.Error()
+		} else if holds, partly, err := m.Solubility(tK); err != nil {
 			return nil, err
+		} else if partly {
+			row.Water = holds
 		}
-		if !partly {
-			holds = math.NaN()
-		}
-		table = append(table, Solubility{tK, holds})
+		table = append(table, row)
 	}
 	return table, nil
 }
@@ -109,28 +137,54 @@ func pairs(c *catalog.Catalog, s *catalog.Solvent) (list []Pair) {
 	return list
 }
 
-// sources are those that the sheet rests on, sorted by id.
-func sources(c *catalog.Catalog, s *catalog.Solvent, pairs []Pair) []catalog.Source {
+// origins are the ids of the sources behind a solvent.
+func origins(s *catalog.Solvent, pairs []Pair) []string {
 	ids := []string{
 		s.BoilingPoint.Source, s.MeltingPoint.Source, s.VapourPressure.Source, s.Density.Source, s.HeatOfVaporization.Source,
-		s.Water.Source, s.Hazards.Source,
+		s.Water.Source, s.Water.BandOrigin.Source, s.Hazards.Source,
 	}
 	for _, v := range []*catalog.Value{s.FlashPoint, s.Autoignition} {
 		if v != nil {
 			ids = append(ids, v.Source)
 		}
 	}
+	for _, fact := range s.Hazards.Facts {
+		ids = append(ids, fact.Source)
+	}
 	for _, p := range pairs {
 		if !p.Allowed() {
 			ids = append(ids, p.Source)
 		}
 	}
+	return ids
+}
+
+// addSources lists sources by id, each once, sorted.
+func (s *Sheet) addSources(c *catalog.Catalog, ids ...string) {
+	for _, known := range s.Sources {
+		ids = append(ids, known.ID)
+	}
 	slices.Sort(ids)
-	var list []catalog.Source
+	s.Sources = nil
 	for _, id := range slices.Compact(ids) {
 		if source, ok := c.Sources[id]; ok {
-			list = append(list, source)
+			s.Sources = append(s.Sources, source)
 		}
+	}
+}
+
+// knownNotes say where the entry is known to be off, and what of it is the user's own.
+func knownNotes(c *catalog.Catalog, s *catalog.Solvent) (list []string) {
+	for _, miss := range []string{s.KnownMiss, s.Water.KnownMiss} {
+		if miss != "" {
+			list = append(list, "known miss: "+miss)
+		}
+	}
+	if s.Own {
+		list = append(list, fmt.Sprintf("%s is from own data (%s)", s.Name, strings.Join(c.Own, ", ")))
+	}
+	for _, estimate := range s.Estimates {
+		list = append(list, "estimated: "+estimate)
 	}
 	return list
 }
@@ -146,6 +200,9 @@ func notes(s *Sheet) (list []string) {
 	outside("the boiling point", s.BoilingK)
 	if s.BoilingK < s.Solvent.Pure.MeltingK {
 		list = append(list, fmt.Sprintf("%s freezes above the boiling point computed for this pressure: no liquid boils", s.Solvent.Name))
+	}
+	if s.AzeotropeTrouble != "" {
+		list = append(list, "no azeotrope is given: "+s.AzeotropeTrouble)
 	}
 	if s.Azeotrope.Kind != thermo.NoAzeotrope {
 		outside("the azeotrope", s.Azeotrope.TempK)

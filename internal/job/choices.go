@@ -10,24 +10,29 @@ import (
 	"parch/internal/quantity"
 )
 
-// ownCatalogs reads the names of own data files, which are not used yet.
+// ownCatalogs checks the names of own data files and that they were laid over the
+// catalog (see Catalog).
 func (r *reader) ownCatalogs(n *document.Node) {
 	if n == nil {
 		return
 	}
 	if !n.IsList() {
-		r.fileName(n)
+		r.ownCatalog(n)
 		return
 	}
 	for _, item := range n.Items() {
-		r.fileName(item)
+		r.ownCatalog(item)
 	}
 }
 
-// fileName checks the name of a file that is not read yet.
-func (r *reader) fileName(n *document.Node) {
-	if r.label(n) != "" {
-		r.notYet(n)
+func (r *reader) ownCatalog(n *document.Node) {
+	name := r.label(n)
+	if name == "" {
+		return
+	}
+	path := besideJob(r.job.File, name)
+	if !slices.ContainsFunc(r.cat.Own, func(own string) bool { return sameFile(own, path) }) {
+		r.note(n, "not read here: the built-in catalog is used")
 	}
 }
 

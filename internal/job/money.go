@@ -77,6 +77,7 @@ func (r *reader) money(n *document.Node) (money quantity.Money, converted string
 		if rate.From == money.Currency {
 			converted = fmt.Sprintf("%s at %s %s of %s", n.Text(), rate.PerUnit, r.job.Currency, rate.Date)
 			money.Amount, money.Currency = money.Amount.Mul(rate.PerUnit), r.job.Currency
+			r.note(n, "%s is %s %s", converted, money.Amount, r.job.Currency)
 			return money, converted, true
 		}
 	}

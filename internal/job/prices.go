@@ -19,9 +19,9 @@ var numericColumns = []string{"pack", "price", "minimum order", "lead time", "sh
 
 // prices reads the own prices, from the job or from the price list that it names.
 func (r *reader) prices(n *document.Node) {
-	offers := &offers{}
+	given := offers{}
 	for _, own := range r.job.Prices { // the site's rates
-		offers.list = append(offers.list, offer{own, own.Line})
+		given[own.Item] = []Price{own}
 	}
 	var rows []*document.Node
 	switch {
@@ -33,11 +33,25 @@ func (r *reader) prices(n *document.Node) {
 	}
 	for _, entry := range rows {
 		own, ok := r.price(entry)
-		if !ok || offers.clash(entry, own) {
+		if !ok || given.clash(entry, own) {
 			continue
 		}
-		offers.list = append(offers.list, offer{own, entry.Line()})
+		given[own.Item] = append(given[own.Item], own)
 		r.job.Prices = append(r.job.Prices, own)
+	}
+	r.oneTaxBasis(n)
+}
+
+// oneTaxBasis notes prices that say they stand on different tax bases.
+func (r *reader) oneTaxBasis(n *document.Node) {
+	bases := map[string]bool{}
+	for _, p := range r.job.Prices {
+		if p.Tax != "" {
+			bases[p.Tax] = true
+		}
+	}
+	if len(bases) > 1 {
+		r.note(n, "prices of different tax bases are added up as they are: %s", strings.Join(slices.Sorted(maps.Keys(bases)), "; "))
 	}
 }
 
@@ -65,31 +79,28 @@ func (r *reader) priceList(n *document.Node) []*document.Node {
 	return table.Items()
 }
 
-// offers remembers what is priced already.
-type offers struct {
-	list []offer
-}
+// offers are the prices given so far, by item.
+type offers map[string][]Price
 
-type offer struct {
-	Price
-	line int
-}
+// mostPacks of one item: nobody compares more.
+const mostPacks = 50
 
 // clash reports a price that contradicts an earlier one of the same item. Packs
 // of one item may differ in size, in the smallest order (that is a price break)
 // and in the supplier; a price per unit stands alone.
-func (o *offers) clash(n *document.Node, own Price) bool {
-	for _, other := range o.list {
-		if other.Item != own.Item {
-			continue
-		}
+func (o offers) clash(n *document.Node, own Price) bool {
+	if len(o[own.Item]) == mostPacks {
+		n.Fail("more than %d packs of %q", mostPacks, own.Item)
+		return true
+	}
+	for _, other := range o[own.Item] {
 		perUnit := own.PackSize.IsZero() || other.PackSize.IsZero()
 		if perUnit || own.PackSize.Equal(other.PackSize) && own.MinimumOrder == other.MinimumOrder && own.Supplier == other.Supplier {
-			n.Fail("a price of %q is already given on line %d", own.Item, other.line)
+			n.Fail("a price of %q is already given on line %d", own.Item, other.Line)
 			return true
 		}
 		if other.WaterMax != own.WaterMax {
-			n.Fail("the packs of %q state different water (line %d); one item has one limit", own.Item, other.line)
+			n.Fail("the packs of %q state different water (line %d); one item has one limit", own.Item, other.Line)
 			return true
 		}
 	}

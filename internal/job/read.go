@@ -10,6 +10,7 @@ import (
 
 	"parch/catalog"
 	"parch/internal/document"
+	"parch/internal/listing"
 	"parch/internal/quantity"
 )
 
@@ -48,6 +49,9 @@ func ReadWith(name string, data []byte, cat *catalog.Catalog, files func(name st
 		return nil, err
 	}
 	r.job.Warnings = r.sortedNotes()
+	if own := listing.Own(cat); own != "" {
+		r.job.Warnings = append([]string{own}, r.job.Warnings...)
+	}
 	return r.job, nil
 }
 
@@ -158,9 +162,11 @@ func (r *reader) orPractice(n *document.Node, key, practice string, d quantity.D
 		r.problems.Add(0, "%s is not given, and the catalog has no practice value %q", key, practice)
 		return 0
 	}
-	r.job.Defaults = append(r.job.Defaults, Default{
-		Key: key, Text: v.Text, Source: v.Source, Confidence: string(v.Confidence), Date: r.cat.Date,
-	})
+	confidence := string(v.Confidence)
+	if v.Own {
+		confidence += ", own data"
+	}
+	r.job.Defaults = append(r.job.Defaults, Default{Key: key, Text: v.Text, Source: v.Source, Confidence: confidence, Date: r.cat.Date})
 	return v.SI
 }
 

@@ -27,10 +27,8 @@ func (r *reader) site(n *document.Node) {
 		PeroxideLimitKgPerM3: r.orPractice(f.Get("peroxide limit"), "site.peroxide limit", "site-peroxide-limit", quantity.MassConcentration,
 			between(0, 0.1, "0 mg/L to 100 mg/L")),
 	}
-	for _, key := range []string{"humidity", "attended hours per day"} {
-		if f.Has(key) {
-			r.notYet(f.Get(key))
-		}
+	if key := "attended hours per day"; f.Has(key) {
+		r.notYet(f.Get(key))
 	}
 	r.job.Site.KarlFischer = r.orWord(f.Get("karl fischer"), "site.karl fischer", "coulometric",
 		func(n *document.Node) string { return n.OneOf("coulometric", "volumetric") })

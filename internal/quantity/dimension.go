@@ -27,6 +27,7 @@ const (
 	PerYear               Dimension = "a number per year"              // 1/yr
 	Density               Dimension = "a density"                      // kg/m3
 	MolarMass             Dimension = "a molar mass"                   // kg/mol
+	Amount                Dimension = "an amount of substance"         // mol
 	Number                Dimension = "a plain number"                 // 1
 	Flow                  Dimension = "a flow"                         // m3/s
 	HoldUp                Dimension = "a hold-up of liquid on solid"   // m3/kg

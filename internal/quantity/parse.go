@@ -156,7 +156,7 @@ func meaning(symbol string) (Dimension, bool) {
 
 var everyday = []Dimension{
 	Volume, Mass, WaterContent, Temperature, Power, Energy, Pressure, Time, Length, MassConcentration, PerYear, Density,
-	MolarMass, Flow, HoldUp, Rate, HeatPerMole, MassRatio,
+	MolarMass, Flow, HoldUp, Rate, HeatPerMole, MassRatio, Amount,
 }
 
 func allowed(d Dimension) string { return strings.Join(Units(d), ", ") }
@@ -174,7 +174,7 @@ func advice(text string, d Dimension) string {
 var examples = map[Dimension]string{
 	Volume: "18 L", Mass: "2 kg", WaterContent: "480 mg/kg", MassRatio: "0.02 kg/kg", Temperature: "21 °C", TemperatureDifference: "5 K",
 	Power: "1.6 kW", Energy: "2 kWh", Pressure: "1013 hPa", InversePressure: "1e-10 1/Pa", Time: "48 h", Length: "0.25 m", Share: "90 %",
-	MassConcentration: "5 g/L", PerYear: "40 /yr", Density: "867 kg/m3", MolarMass: "92.14 g/mol", Number: "3", Flow: "2 L/min",
+	MassConcentration: "5 g/L", PerYear: "40 /yr", Density: "867 kg/m3", MolarMass: "92.14 g/mol", Amount: "0.5 mol", Number: "3", Flow: "2 L/min",
 	HoldUp: "0.25 L/kg", Rate: "0.22 1/h", HeatPerMole: "35 kJ/mol", MolarHeatCapacity: "157 J/mol/K", HeatCapacity: "1.05 kJ/kg/K",
 	Viscosity: "0.55 mPa s", MassPerEnergy: "0.25 kg/kWh", Diffusivity: "6e-9 m2/s", Velocity: "0.2 m/s",
 }

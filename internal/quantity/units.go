@@ -70,6 +70,7 @@ var units = map[Dimension][]unit{
 		{symbol: "kg/m3", factor: 1}, {symbol: "g/mL", factor: 1e3}, {symbol: "g/cm3", factor: 1e3}, {symbol: "kg/L", factor: 1e3}, {symbol: "g/L", factor: 1},
 	},
 	MolarMass: {{symbol: "g/mol", per: 1e3}, {symbol: "kg/mol", factor: 1}},
+	Amount:    {{symbol: "mol", factor: 1}, {symbol: "mmol", per: 1e3}, {symbol: "kmol", factor: 1e3}},
 	Number:    {{symbol: "", factor: 1}},
 	Flow: {
 		{symbol: "L/min", per: 60e3}, {symbol: "mL/min", per: 60e6}, {symbol: "L/h", per: 1e3 * hourS},

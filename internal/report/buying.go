@@ -158,7 +158,7 @@ func (p *page) doubtful(r *study.Report) {
 	delete(by, costs.NoFlag)
 	if len(by) > 0 {
 		p.line("")
-		p.say(0, 0, "Prices to check (*):")
+		p.say(0, 0, "Prices to check (*), as of %s:", r.PriceDate)
 	}
 	for _, flag := range []costs.Flag{costs.Expired, costs.Old, costs.Undated, costs.Indicative} {
 		if len(by[flag]) > 0 {

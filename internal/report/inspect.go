@@ -24,12 +24,26 @@ type sheetOut struct {
 	TrapFloor     number          `json:"trap_floor_mg_per_kg"`
 	Quality       string          `json:"quality"`
 	Sources       []string        `json:"sources"`
+	Notes         []string        `json:"notes"`
 }
 
 type azeotropeOut struct {
-	Kind        thermo.AzeotropeKind `json:"kind"`
-	Temperature number               `json:"temperature_c"`
-	WaterMass   number               `json:"water_mass_percent"`
+	Kind        *string `json:"kind"` // null where the model does not reach
+	Temperature number  `json:"temperature_c"`
+	WaterMass   number  `json:"water_mass_percent"`
+}
+
+// sheetWithCarrierOut is the sheet where a carrier was asked for.
+type sheetWithCarrierOut struct {
+	sheetOut
+	Ternary *ternaryOut `json:"ternary_azeotrope"`
+}
+
+type ternaryOut struct {
+	Temperature number `json:"temperature_c"`
+	WaterMass   number `json:"water_mass_percent"`
+	SolventMass number `json:"solvent_mass_percent"`
+	CarrierMass number `json:"carrier_mass_percent"`
 }
 
 type solubilityOut struct {
@@ -45,7 +59,7 @@ func SheetJSON(w io.Writer, s *inspect.Sheet) error {
 		Solvent:       s.Solvent.Key,
 		PressureKPa:   number(s.PressurePa / 1000),
 		BoilingPointC: celsius(s.BoilingK),
-		Azeotrope:     azeotropeOut{Kind: thermo.NoAzeotrope, Temperature: number(math.NaN()), WaterMass: number(math.NaN())},
+		Azeotrope:     showAzeotrope(s),
 		Solubility:    make([]solubilityOut, len(s.Solubility)),
 		GammaInfinite: number(s.GammaInfinite),
 		ReceiverC:     celsius(s.ReceiverK),
@@ -54,9 +68,6 @@ func SheetJSON(w io.Writer, s *inspect.Sheet) error {
 		Quality:       s.Solvent.Water.Quality,
 		Sources:       make([]string, len(s.Sources)),
 	}
-	if s.Azeotrope.Kind != thermo.NoAzeotrope {
-		out.Azeotrope = azeotropeOut{s.Azeotrope.Kind, celsius(s.Azeotrope.TempK), number(100 * s.AzeotropeMass)}
-	}
 	if s.Floor.Return != thermo.None {
 		out.TrapFloor = number(s.Floor.Water * mgPerKg)
 	}
@@ -64,36 +75,96 @@ func SheetJSON(w io.Writer, s *inspect.Sheet) error {
 		out.Solubility[i] = solubilityOut{celsius(row.TempK), number(row.Water * mgPerKg)}
 	}
 	for i, source := range s.Sources {
-		out.Sources[i] = source.ID + ": " + source.Reference
+		out.Sources[i] = asOwn(source.ID+": "+source.Reference, source.Own)
 	}
-	return writeJSON(w, out)
+	out.Notes = append([]string{}, s.Notes...)
+	if s.Carrier == nil {
+		return writeJSON(w, out)
+	}
+	return writeJSON(w, sheetWithCarrierOut{out, showTernary(s.Carrier)})
+}
+
+func showAzeotrope(s *inspect.Sheet) azeotropeOut {
+	out := azeotropeOut{Temperature: number(math.NaN()), WaterMass: number(math.NaN())}
+	if s.AzeotropeTrouble != "" {
+		return out
+	}
+	out.Kind = known(string(s.Azeotrope.Kind))
+	if s.Azeotrope.Kind != thermo.NoAzeotrope {
+		out.Temperature, out.WaterMass = celsius(s.Azeotrope.TempK), number(100*s.AzeotropeMass)
+	}
+	return out
+}
+
+func showTernary(k *inspect.Carrier) *ternaryOut {
+	if k.Azeotrope.Kind == thermo.NoAzeotrope {
+		return nil
+	}
+	return &ternaryOut{celsius(k.Azeotrope.TempK), number(100 * k.Mass[thermo.InWater]), number(100 * k.Mass[thermo.InSolvent]), number(100 * k.Mass[thermo.InCarrier])}
 }
 
 // SheetText prints the sheet of a solvent for a terminal.
 func SheetText(w io.Writer, s *inspect.Sheet) error {
 	p := &page{w: w}
-	p.say(0, 2, "%s (%s, %s) and water at %s", s.Solvent.Name, s.Solvent.Formula, s.Solvent.CAS, quantity.FormatPressure(s.PressurePa))
+	p.say(0, 2, "%s and water at %s", sheetTitle(s.Solvent), quantity.FormatPressure(s.PressurePa))
 	p.line("")
-	p.say(3, 4, "Boils at %s [%s, %s]; melts at %s [%s, %s].", quantity.FormatTemperature(s.BoilingK), s.Solvent.VapourPressure.Source,
-		s.Solvent.VapourPressure.Confidence, s.Solvent.MeltingPoint.Text, s.Solvent.MeltingPoint.Source, s.Solvent.MeltingPoint.Confidence)
+	p.say(3, 4, "Boils at %s%s; melts at %s%s.", quantity.FormatTemperature(s.BoilingK), citeOrigin(s.Solvent.VapourPressure.Origin),
+		s.Solvent.MeltingPoint.Text, citeOrigin(s.Solvent.MeltingPoint.Origin))
 	p.say(3, 4, "%s", azeotropeText(s))
 	p.say(3, 4, "%s", floorText(s))
+	if s.Carrier != nil {
+		p.say(3, 4, "%s", carrierText(s))
+	}
 	p.say(3, 4, "Activity coefficient of a trace of water at 25 °C: %s.", quantity.Significant(s.GammaInfinite, 3))
 	pair := s.Solvent.Water
-	p.say(3, 4, "Model of the pair: NRTL of quality %s, %.0f to %.0f °C [%s, %s].", pair.Quality,
-		float64(celsius(pair.TMinK)), float64(celsius(pair.TMaxK)), pair.Source, pair.Confidence)
+	p.say(3, 4, "Model of the pair: NRTL of quality %s, %.0f to %.0f °C%s.", pair.Quality, float64(celsius(pair.TMinK)), float64(celsius(pair.TMaxK)), citeOrigin(pair.Origin))
 	p.solubility(s)
 	p.hazards(s.Solvent)
 	p.pairs(s.Pairs)
 	p.notes("Notes", s.Notes)
 	p.heading("Sources:")
 	for _, source := range s.Sources {
-		p.say(5, 4, "%s: %s", source.ID, source.Reference)
+		p.say(5, 4, "%s", asOwn(source.ID+": "+source.Reference, source.Own))
 	}
 	return p.close()
 }
 
+func sheetTitle(s *catalog.Solvent) string {
+	title := s.Name + " (" + s.Formula
+	if s.CAS != "" {
+		title += ", " + s.CAS
+	}
+	return asOwn(title+")", s.Own)
+}
+
+// citeOrigin is the source and the confidence of a number, in brackets.
+func citeOrigin(o catalog.Origin) string {
+	text := o.Source + ", " + string(o.Confidence)
+	if o.Own {
+		text += ", " + ownMark
+	}
+	return " [" + text + "]"
+}
+
+func carrierText(s *inspect.Sheet) string {
+	k := s.Carrier
+	if k.Azeotrope.Kind == thermo.NoAzeotrope {
+		return fmt.Sprintf("With %s: no ternary azeotrope is given; see the notes.", k.Name)
+	}
+	text := fmt.Sprintf("With %s: %s ternary azeotrope at %s, by mass %s %% water, %s %% %s, %s %% %s (%s).", k.Name, k.Azeotrope.Kind,
+		quantity.FormatTemperature(k.Azeotrope.TempK), quantity.Significant(100*k.Mass[thermo.InWater], 3), quantity.Significant(100*k.Mass[thermo.InSolvent], 3), s.Solvent.Name,
+		quantity.Significant(100*k.Mass[thermo.InCarrier], 3), k.Name, k.Model)
+	receiver := quantity.FormatTemperature(s.ReceiverK)
+	if k.Layers.Return == thermo.None {
+		return text + fmt.Sprintf(" Its condensate is not parted at %s: %s.", receiver, k.Layers.Reason)
+	}
+	return text + fmt.Sprintf(" Its condensate splits at %s and the %s layer goes back.", receiver, k.Layers.Return)
+}
+
 func azeotropeText(s *inspect.Sheet) string {
+	if s.AzeotropeTrouble != "" {
+		return "Azeotrope with water: outside the model; see the notes."
+	}
 	if s.Azeotrope.Kind == thermo.NoAzeotrope {
 		return "No azeotrope with water at this pressure."
 	}
@@ -115,7 +186,9 @@ func (p *page) solubility(s *inspect.Sheet) {
 	rows := make([][]string, len(s.Solubility))
 	for i, row := range s.Solubility {
 		holds := "mixes"
-		if !math.IsNaN(row.Water) {
+		if row.Outside != "" {
+			holds, mixes = "outside the model", false
+		} else if !math.IsNaN(row.Water) {
 			holds, mixes = mgKg(row.Water), false
 		}
 		rows[i] = []string{quantity.Significant(float64(celsius(row.TempK)), 3), holds}
@@ -165,7 +238,7 @@ func valueText(v *catalog.Value) string {
 	if v == nil {
 		return ""
 	}
-	return fmt.Sprintf("%s [%s, %s]", v.Text, v.Source, v.Confidence)
+	return v.Text + citeOrigin(v.Origin)
 }
 
 // pairs lists the drying agents, those that are refused with the reason.
@@ -187,7 +260,7 @@ func (p *page) pairs(pairs []inspect.Pair) {
 	}
 	for _, pair := range pairs {
 		if !pair.Allowed() && pair.Reason != "" {
-			p.say(5, 4, "%s: %s%s", pair.Agent, pair.Reason, cite(pair.Source))
+			p.say(5, 4, "%s: %s%s", pair.Agent, asOwn(pair.Reason, pair.Own), cite(pair.Source))
 		}
 	}
 }

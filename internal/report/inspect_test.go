@@ -15,7 +15,7 @@ import (
 
 const (
 	sheetKeys = "solvent pressure_kpa boiling_point_c azeotrope water_solubility gamma_water_inf_25c receiver_c returns " +
-		"trap_floor_mg_per_kg quality sources"
+		"trap_floor_mg_per_kg quality sources notes"
 	azeotropeKeys  = "kind temperature_c water_mass_percent"
 	solubilityKeys = "temperature_c mg_per_kg"
 )

@@ -92,7 +92,11 @@ func (p *page) weak(weak []study.Weak) {
 		return
 	}
 	p.line("")
-	p.say(0, 0, "Numbers that do not rest on a published source:")
+	heading := "Numbers that do not rest on a published source:"
+	if slices.ContainsFunc(weak, func(w study.Weak) bool { return strings.HasPrefix(w.Confidence, ownMark) }) {
+		heading = "Numbers that do not rest on a published source, or are your own:"
+	}
+	p.say(0, 0, "%s", heading)
 	var grades []string
 	by := map[string][]string{}
 	for _, w := range weak {

@@ -18,6 +18,7 @@ func synthetic() *study.Report {
 	return &study.Report{
 		Version:     "0.1",
 		CatalogDate: "2026-12-01",
+		PriceDate:   "2026-12-01",
 		Job:         &job.Job{File: "job.yaml", Title: "Made up", Currency: "EUR", Objective: "cost"},
 		Book: costs.Book{
 			"technician": {Item: "technician", Own: true},
@@ -88,8 +89,8 @@ func rankedLot() study.Lot {
 					FirstYear: decimal.NewFromInt(7402), LaterYears: decimal.NewFromInt(4912), PackCost: decimal.NewFromInt(336),
 					Investment: &costs.Investment{Against: "buy", YearlySaving: decimal.NewFromInt(2308), PaybackYears: 1.0789, Years: 5, Interest: 0.06, PresentValue: decimal.RequireFromString("-7232.15")}},
 				Footprint: costs.Footprint{EnergyKg: 0.9, MakingKg: 0.3, BurningKg: 0.2, AgentKg: 0.1, WasteKg: map[string]float64{"waste-aqueous": 0.02, "waste-wet-solid": 2.18}, Sources: []string{"memory"}},
-				Cautions: []catalog.Caution{codes, peroxide},
-				Warnings: []string{"room too warm for the receiver"},
+				Cautions:  []catalog.Caution{codes, peroxide},
+				Warnings:  []string{"room too warm for the receiver"},
 			},
 			{
 				ID: "buy", Label: "buy dry", Rank: 2,

@@ -6,6 +6,7 @@ import (
 	"sort"
 	"strings"
 
+	"parch/catalog"
 	"parch/internal/quantity"
 	"parch/internal/steps"
 )
@@ -180,9 +181,17 @@ func (c *Case) refuseAgent(agent string) (reason, source string) {
 		return "", ""
 	}
 	if !v.Allowed() {
-		return fmt.Sprintf("%s: %s", v.Word, v.Reason), v.Source
+		return fmt.Sprintf("%s: %s%s", v.Word, v.Reason, ownMark(v)), v.Source
 	}
 	return "", ""
+}
+
+// ownMark follows a verdict that is the user's own.
+func ownMark(v catalog.Verdict) string {
+	if v.Own {
+		return " (own data)"
+	}
+	return ""
 }
 
 func (c *Case) accepted(agent string) bool {

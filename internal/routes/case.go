@@ -7,6 +7,7 @@ import (
 	"parch/catalog"
 	"parch/internal/assay"
 	"parch/internal/job"
+	"parch/internal/mixture"
 	"parch/internal/steps"
 	"parch/internal/thermo"
 )
@@ -33,7 +34,7 @@ func NewCase(j *job.Job, lot job.Lot, c *catalog.Catalog) (*Case, error) {
 	if !ok || solvent.Water == nil {
 		return nil, fmt.Errorf("%s: no data on water in %s", lot.Name, lot.Solvent)
 	}
-	m := &thermo.Mixture{Water: &c.Solvents["water"].Pure, Solvent: &solvent.Pure, NRTL: solvent.Water.NRTL}
+	m := mixture.Pair(c, solvent)
 	k := c.Assays[j.Site.KarlFischer]
 	method := assay.Method{Name: k.Key, Repeatability: k.Repeatability.SI, DetectionLimit: k.DetectionLimit.SI, Injections: k.Injections}
 	trap, noTrap := steps.NewTrapEquilibrium(m, j.Site.ReceiverK, j.Site.PressurePa)

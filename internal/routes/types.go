@@ -57,7 +57,8 @@ type choice struct {
 // at returns the choices of stage i.
 func (s Settings) at(r Route, i int) (c choice) {
 	if k := r[:i].count(steps.Soak); r[i].Kind == steps.Soak {
-		c.soakHours, c.stirred = s.SoakHours[k], s.Stirred[k]
+		c.soakHours = s.SoakHours[k]
+		c.stirred = k < len(s.Stirred) && s.Stirred[k] // not given: still
 	}
 	if k := r[:i].count(steps.Soak, steps.Column); r[i].Kind == steps.Soak || r[i].Kind == steps.Column {
 		c.after = s.Sieve[k]
@@ -82,7 +83,7 @@ var ErrSettings = errors.New("settings do not fit")
 // Fit reports settings that do not belong to the route.
 func (s Settings) Fit(r Route) error {
 	soaks, beds := r.count(steps.Soak), r.count(steps.Soak, steps.Column)
-	if len(s.HandOverMgPerKg) != len(r)-1 || len(s.SoakHours) != soaks || len(s.Stirred) != soaks || len(s.Sieve) != beds {
+	if len(s.HandOverMgPerKg) != len(r)-1 || len(s.SoakHours) != soaks || len(s.Stirred) > soaks || len(s.Sieve) != beds {
 		return fmt.Errorf("%s: %w: %d hand-overs, %d soak hours, %d stirred, %d sieve choices", r.ID(), ErrSettings,
 			len(s.HandOverMgPerKg), len(s.SoakHours), len(s.Stirred), len(s.Sieve))
 	}

@@ -61,7 +61,7 @@ func (t *Tuner) dominatedSalts(all []routes.Route) map[string]string {
 		}
 		run.Uses = ofStage(run.Uses, 1)
 		cost, err := t.Book.PerBatchFloat(run.Uses, t.Case.Lot.BatchesPerYear)
-		if err != nil {
+		if err != nil || len(t.Book.Missing(run.Uses)) > 0 { // no price is not free
 			continue
 		}
 		o := run.Outcomes[0]

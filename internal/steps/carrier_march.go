@@ -13,6 +13,7 @@ const (
 	carrierShortestStep = 1e-7 // of the pot
 	carrierMostSteps    = 3000
 	progressAccuracy    = 1e-5
+	mostGrowth          = 1.0 // of ln n in a step; nothing in the pot should grow
 )
 
 func ignore(*state, *condensed) {}
@@ -75,19 +76,23 @@ const stages = 7
 // advance takes one step; off is its error over what is allowed. Amounts in the
 // pot are stepped in their logarithms, in which a trace that falls exponentially
 // is a straight line, however fast.
-func (r *refluxing) advance(rate flow, first *state, h float64) (next, slope state, c condensed, off float64, err error) {
+func (r *refluxing) advance(flows flow, first *state, h float64) (next, slope state, c condensed, off float64, err error) {
 	var k [stages]state
 	var g [stages]Fractions
 	k[0], g[0] = *first, growth(&r.s, first)
 	for i := 1; i < stages; i++ {
-		next = r.s.moved(h, mixed(&stageWeights[i], &g, i))
+		rate := mixed(&stageWeights[i], &g, i)
+		if !(h*math.Max(rate[0], math.Max(rate[1], rate[2])) < mostGrowth) {
+			return next, slope, c, math.Inf(1), nil
+		}
+		next = r.s.moved(h, rate)
 		if i == stages-1 {
 			for j := range i {
 				next.collect(h*stageWeights[i][j], &k[j])
 			}
 			next.settle(&r.s, first)
 		}
-		if k[i], c, err = rate(&next); err != nil {
+		if k[i], c, err = flows(&next); err != nil {
 			return next, slope, c, 0, err
 		}
 		g[i] = growth(&next, &k[i])

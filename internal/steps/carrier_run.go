@@ -405,6 +405,8 @@ func (r *refluxing) blocked(s *state, c *condensed) (stop Stop, text string) {
 		return AtOneLayer, fmt.Sprintf("no second layer: the condensate of a pot at %s is one liquid at %.0f °C", pot, r.eq.ReceiverK-273.15)
 	case l.Return == thermo.None:
 		return AtExchange, fmt.Sprintf("%s, with %s in the pot", l.Reason, pot)
+	case r.carrierFree(c.split.Aqueous) <= r.dryness(s):
+		return AtFloor, fmt.Sprintf("floor: with %s in the pot the aqueous layer is no wetter", pot)
 	case !r.fits(l.Return):
 		return AtExchange, fmt.Sprintf("the layers change places with %s in the pot: organic %.0f, aqueous %.0f kg/m3", pot, l.OrganicKgPerM3, l.AqueousKgPerM3)
 	}
@@ -459,7 +461,16 @@ func (r *refluxing) firstLayers() error {
 		return fmt.Errorf("%w: the layers need a %s return (organic %.0f, aqueous %.0f kg/m3), the receiver returns the %s layer",
 			ErrNoCarrier, l.Return, l.OrganicKgPerM3, l.AqueousKgPerM3, r.rig.Returns)
 	}
+	if layer, pot := r.carrierFree(c.split.Aqueous), r.dryness(&r.s); layer <= pot {
+		return fmt.Errorf("%w: without the carrier the aqueous layer holds %.3g %% water, the pot %.3g %%: the solvent would leave first",
+			ErrNoCarrier, 100*layer, 100*pot)
+	}
 	return nil
+}
+
+// carrierFree is water/(water + solvent) by mass in a layer.
+func (r *refluxing) carrierFree(layer Fractions) float64 {
+	return r.dryness(&state{pot: layer})
 }
 
 func (r *refluxing) fits(needed thermo.Returns) bool {
@@ -473,6 +484,9 @@ func (r *refluxing) strip() error {
 	first := math.Log(carrierShare(&r.s) / r.plan.CarrierLimit)
 	if first <= 0 {
 		return nil
+	}
+	if err := r.strippable(carrierShare(&r.s)); err != nil {
+		return err
 	}
 	lnHeel := math.Log(r.leastKg() / r.massKg(r.s.pot))
 	start := r.massKg(r.s.pot)
@@ -488,6 +502,20 @@ func (r *refluxing) strip() error {
 	}
 	if carrierShare(&r.s) > r.plan.CarrierLimit*(1+1e-4) {
 		r.stripWhy = AtHeel
+	}
+	return nil
+}
+
+// strippable refuses a pot whose vapour holds less carrier than the pot itself:
+// beyond the azeotrope the solvent would leave and the carrier stay.
+func (r *refluxing) strippable(potShare float64) error {
+	c, err := r.climb(&r.s)
+	if err != nil {
+		return err
+	}
+	if head := r.m.Mass(c.head.Y)[carrier]; head <= potShare {
+		return fmt.Errorf("%w: the dried pot holds %.3g %% %s, its vapour %.3g %%: the solvent would leave first; take less carrier",
+			ErrNoCarrier, 100*potShare, r.m.Pure[carrier].Key, 100*head)
 	}
 	return nil
 }

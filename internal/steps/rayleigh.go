@@ -165,7 +165,8 @@ func (o drawnOff) water() float64 { return o.waterKg / (o.waterKg + o.solventKg)
 func (d *drawing) drawn() drawnOff {
 	left := d.mol0 * math.Exp(d.lnLeft)
 	water := math.Max(0, d.mol0*d.x0-left*d.at.x)
-	return drawnOff{water * d.m.Water.MolarMassKgPerMol, (d.mol0 - left - water) * d.m.Solvent.MolarMassKgPerMol}
+	solvent := math.Max(0, d.mol0-left-water)
+	return drawnOff{water * d.m.Water.MolarMassKgPerMol, solvent * d.m.Solvent.MolarMassKgPerMol}
 }
 
 func (d *drawing) drawnM3() float64 {

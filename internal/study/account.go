@@ -6,6 +6,7 @@ import (
 
 	"parch/catalog"
 	"parch/internal/costs"
+	"parch/internal/job"
 	"parch/internal/routes"
 )
 
@@ -96,4 +97,18 @@ func (r *Report) Priced() *Report {
 		priced.Lots[i] = l
 	}
 	return &priced
+}
+
+// recalled names the figures around the money that rest on memory.
+func (r *Report) recalled() []Weak {
+	var weak []Weak
+	if r.Job.Site.Cooling == job.Chiller {
+		weak = append(weak, Weak{What: "electricity of a chiller", Value: "0.7 kWh a kWh of heat", Confidence: string(catalog.Memory), Note: "0.4 to 1.0"})
+	}
+	for _, p := range r.Buying.Purchases {
+		if p.Transport.UN != "" {
+			weak = append(weak, Weak{What: "transport class of " + p.Item, Value: "UN " + p.Transport.UN, Confidence: string(catalog.Memory), Note: p.Transport.Basis})
+		}
+	}
+	return weak
 }

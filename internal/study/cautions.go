@@ -12,7 +12,7 @@ func cautions(k *routes.Case, r routes.Route) []catalog.Caution {
 	var out []catalog.Caution
 	for _, c := range k.Catalog.Cautions {
 		if applies(c, k, r) {
-			out = append(out, c)
+			out = append(out, ownCaution(c))
 		}
 	}
 	for _, s := range r {
@@ -20,13 +20,21 @@ func cautions(k *routes.Case, r routes.Route) []catalog.Caution {
 			continue
 		}
 		if v, ok := k.Catalog.Verdict(k.Solvent, s.Agent); ok && v.Word != "ok" {
-			out = append(out, catalog.Caution{
+			out = append(out, ownCaution(catalog.Caution{
 				Code: "pair-" + s.Agent, Level: "caution", Origin: v.Origin,
 				Text: k.Catalog.Agents[s.Agent].Name + " with " + k.Solvent.Name + " is " + v.Word + ": " + v.Reason + ".",
-			})
+			}))
 		}
 	}
 	return out
+}
+
+// ownCaution marks a caution that is the user's own.
+func ownCaution(c catalog.Caution) catalog.Caution {
+	if c.Own {
+		c.Text += " (own data)"
+	}
+	return c
 }
 
 func applies(c catalog.Caution, k *routes.Case, r routes.Route) bool {
@@ -34,7 +42,7 @@ func applies(c catalog.Caution, k *routes.Case, r routes.Route) bool {
 	switch {
 	case c.Peroxide && (h.PeroxideClass == "none" || h.PeroxideClass == ""):
 		return false
-	case c.Flammable && k.Solvent.FlashPoint == nil:
+	case c.Flammable && k.Solvent.FlashPoint == nil && !k.Solvent.Own: // an own solvent is held to burn
 		return false
 	case c.Reclaimed && !k.Lot.Reclaimed:
 		return false

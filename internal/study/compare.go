@@ -33,7 +33,7 @@ func Compare(ctx context.Context, j *job.Job, c *catalog.Catalog, o Options) (*R
 	if err != nil {
 		return nil, err
 	}
-	r := &Report{Version: Version, CatalogDate: c.Date, Job: j, Book: book, Warnings: j.Warnings}
+	r := &Report{Version: Version, CatalogDate: c.Date, PriceDate: costs.ReferenceDate(c, j), Job: j, Book: book, Warnings: j.Warnings}
 	if err := r.compareLots(ctx, c, o); err != nil {
 		return nil, err
 	}
@@ -42,6 +42,7 @@ func Compare(ctx context.Context, j *job.Job, c *catalog.Catalog, o Options) (*R
 	}
 	r.Book = usedPrices(r)
 	r.Sources, r.Weak = provenance(r, c)
+	r.Weak = append(r.Weak, r.recalled()...)
 	return r, nil
 }
 

@@ -6,6 +6,7 @@ import (
 	"strings"
 
 	"parch/catalog"
+	"parch/internal/costs"
 	"parch/internal/steps"
 )
 
@@ -83,8 +84,12 @@ func (p *shelf) value(what string, v catalog.Value) { p.note(what, v.Text, v.Ori
 
 func (p *shelf) note(what, text string, o catalog.Origin) {
 	p.cite(o.Source)
-	if o.Confidence.Weak() {
-		p.weak[what] = Weak{What: what, Value: text, Confidence: string(o.Confidence), Source: o.Source, Note: o.Note}
+	confidence := string(o.Confidence)
+	if o.Own {
+		confidence = "own data, " + confidence
+	}
+	if o.Own || o.Confidence.Weak() {
+		p.weak[what] = Weak{What: what, Value: text, Confidence: confidence, Source: o.Source, Note: o.Note}
 	}
 }
 
@@ -99,6 +104,12 @@ func (p *shelf) solvent(s *catalog.Solvent) {
 		} {
 			p.note(one.Name+": "+curve.what, string(curve.c.Equation), curve.c.Origin)
 		}
+	}
+	if s.Own {
+		p.value(s.Name+": molar mass", s.MolarMass)
+		p.value(s.Name+": boiling point", s.BoilingPoint)
+		p.value(s.Name+": melting point", s.MeltingPoint)
+		p.value(s.Name+": critical temperature", s.CriticalTemperature)
 	}
 	if s.Water != nil {
 		p.note("water + "+s.Name+": activity model", "quality "+s.Water.Quality, s.Water.Origin)
@@ -176,14 +187,18 @@ func (p *shelf) prices(r *Report) {
 	for _, item := range slices.Sorted(maps.Keys(r.Book)) {
 		price := r.Book[item]
 		p.note("price of "+price.Label, price.PerUnit.String()+" "+r.Job.Currency+" per "+unitWord(price.Unit),
-			catalog.Origin{Source: price.Source, Confidence: catalog.Confidence(price.Confidence), Note: price.Note})
+			catalog.Origin{Source: price.Source, Confidence: catalog.Confidence(price.Confidence), Note: price.Note, Own: price.Own && price.Source != costs.OwnSource})
 	}
 }
 
 func (p *shelf) sources() []catalog.Source {
 	var out []catalog.Source
 	for _, id := range slices.Sorted(maps.Keys(p.cited)) {
-		out = append(out, p.catalog.Sources[id])
+		source := p.catalog.Sources[id]
+		if source.Own {
+			source.Reference = "own data: " + source.Reference
+		}
+		out = append(out, source)
 	}
 	return out
 }

@@ -12,6 +12,7 @@ import (
 type Report struct {
 	Version     string
 	CatalogDate string
+	PriceDate   string // from which prices are counted old
 	Job         *job.Job
 	Seed        int64
 	Draws       int
@@ -23,7 +24,8 @@ type Report struct {
 	Warnings    []string
 }
 
-// Weak is a number that rests on memory, common practice or an assumption.
+// Weak is a number that rests on memory, common practice or an assumption, or that
+// is the user's own.
 type Weak struct {
 	What, Value, Confidence, Source, Note string
 }

@@ -34,6 +34,9 @@ func lotWarnings(k *routes.Case) []string {
 	if k.Lot.Water < k.Assay.DetectionLimit {
 		add("the start of %s lies below the detection limit of %s", quantity.FormatWater(k.Lot.Water), quantity.FormatWater(k.Assay.DetectionLimit))
 	}
+	for _, estimate := range k.Solvent.Estimates {
+		add("%s, estimated: %s", k.Solvent.Name, estimate)
+	}
 	if k.Solvent.Water.Quality != "A" {
 		add("water + %s: activity model of quality %s", k.Solvent.Name, k.Solvent.Water.Quality)
 	}
@@ -47,6 +50,7 @@ func lotWarnings(k *routes.Case) []string {
 func runWarnings(k *routes.Case, run routes.Run) []string {
 	var w []string
 	add := func(format string, args ...any) { w = append(w, fmt.Sprintf(format, args...)) }
+	w = append(w, ownWarnings(k, run)...)
 	for _, o := range run.Outcomes {
 		w = append(w, o.Warnings...)
 		switch o.Kind {
@@ -77,6 +81,26 @@ func runWarnings(k *routes.Case, run routes.Run) []string {
 	}
 	if !finite(run.CO2eKg) {
 		add("no emission factor for part of this route: CO2e left out")
+	}
+	return w
+}
+
+// ownWarnings say which entries of the user's own a route rests on.
+func ownWarnings(k *routes.Case, run routes.Run) (w []string) {
+	if s := k.Solvent; s.Own {
+		text := s.Name + " is from own data"
+		if n := len(s.Estimates); n > 0 {
+			text += fmt.Sprintf(", with %d parts of it estimated", n)
+		}
+		w = append(w, text)
+	}
+	for _, o := range run.Outcomes {
+		if a := k.Catalog.Agents[o.Agent]; a != nil && a.Own {
+			w = append(w, a.Name+" is from own data")
+		}
+		if a := k.Catalog.Apparatus[o.Apparatus]; a != nil && a.Own {
+			w = append(w, a.Name+" is from own data")
+		}
 	}
 	return w
 }

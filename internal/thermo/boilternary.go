@@ -101,7 +101,7 @@ func (m *Ternary) boilLayers(x Fractions, pressurePa, guessK float64, split Tern
 func (m *Ternary) follow(x Fractions, tK float64, near TernarySplit) (TernarySplit, error) {
 	if near.Exists {
 		l := m.at(tK)
-		if s, err := l.refine(&x, lnRatio(&near.Aqueous, &near.Organic)); err == nil && s.Exists {
+		if s, err := l.refine(&x, lnRatio(&near.Aqueous, &near.Organic), flashSoon); err == nil && s.Exists {
 			s.outer = near.outer
 			return s, nil
 		}
@@ -118,7 +118,7 @@ type TernaryAzeotrope struct {
 }
 
 const (
-	azeotropeStages    = 3000
+	azeotropeStages    = 1000
 	azeotropeTolerance = 1e-8
 	absentFraction     = 1e-4 // a component below it is not part of an azeotrope
 )
@@ -126,33 +126,40 @@ const (
 // FindAzeotrope climbs, stage by stage at total reflux (each vapour condensed
 // and boiled again), from several liquids to the lowest-boiling mixture near
 // them. It finds a ternary azeotrope only if that is a minimum of temperature.
+// A climb that does not settle is a *NotConverged error; the lowest-boiling
+// mixture met is then returned with it, as no azeotrope.
 func (m *Ternary) FindAzeotrope(pressurePa float64) (TernaryAzeotrope, error) {
 	if err := m.CheckPressure(pressurePa); err != nil {
 		return TernaryAzeotrope{}, err
 	}
 	lowest := TernaryAzeotrope{Kind: NoAzeotrope, TempK: math.Inf(1)}
+	var failed error
 	for _, start := range []Fractions{{0.3, 0.3, 0.4}, {0.3, 0.1, 0.6}, {0.1, 0.6, 0.3}} {
 		a, err := m.climb(start, pressurePa)
 		if err != nil {
-			return TernaryAzeotrope{}, err
+			failed = err
 		}
 		if a.TempK < lowest.TempK-1e-4 {
 			lowest = a
 		}
 	}
-	return lowest, nil
+	return lowest, failed
 }
 
 func (m *Ternary) climb(x Fractions, pressurePa float64) (TernaryAzeotrope, error) {
+	lowest := Boiling{TempK: math.Inf(1)}
 	var b Boiling
-	var err error
+	var change float64
 	for i := range azeotropeStages {
+		var err error
 		if b, err = m.Boil(x, pressurePa, b); err != nil {
-			return TernaryAzeotrope{}, err
+			return TernaryAzeotrope{TempK: math.Inf(1)}, err
 		}
-		change := minus(&b.Y, &x)
-		if largest(&change) < azeotropeTolerance {
+		if change = apart(&b.Y, &x); change < azeotropeTolerance {
 			return azeotropeOf(b), nil
+		}
+		if b.TempK < lowest.TempK {
+			lowest = b
 		}
 		if i%20 == 19 {
 			if a, ok := m.closeIn(b, pressurePa); ok {
@@ -161,8 +168,10 @@ func (m *Ternary) climb(x Fractions, pressurePa float64) (TernaryAzeotrope, erro
 		}
 		x = b.Y
 	}
-	return TernaryAzeotrope{}, fmt.Errorf("%s at %.4g kPa: %w", m.name(), pressurePa/1e3,
-		&NotConverged{"the climb to the lowest-boiling mixture", azeotropeStages, math.Abs(b.Y[0] - x[0])})
+	best := azeotropeOf(lowest)
+	best.Kind = NoAzeotrope
+	return best, fmt.Errorf("%s at %.4g kPa: %w", m.name(), pressurePa/1e3,
+		&NotConverged{"the climb to the lowest-boiling mixture", azeotropeStages, change})
 }
 
 func azeotropeOf(b Boiling) TernaryAzeotrope {

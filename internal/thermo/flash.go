@@ -57,7 +57,7 @@ func (m *Ternary) split(z Fractions, tK float64, guess TernarySplit) (TernarySpl
 	z = lifted(z)
 	l := m.at(tK)
 	search := splitSearch{liquid: &l, z: z}
-	if guess.Exists && guess.outer && search.try(&guess.Aqueous, &guess.Organic) {
+	if guess.Exists && guess.outer && search.try(&guess.Aqueous, &guess.Organic, flashSoon) {
 		if search.best.outer = search.best.Aqueous[InWater] > wateryEnough; search.best.outer {
 			return search.best, nil
 		}
@@ -67,16 +67,16 @@ func (m *Ternary) split(z Fractions, tK float64, guess TernarySplit) (TernarySpl
 		return TernarySplit{}, nil
 	}
 	dry, watery := outside(&z)
-	if search.try(&watery, &dry) {
+	if search.try(&watery, &dry, flashSoon) {
 		search.best.outer = search.best.Aqueous[InWater] > wateryEnough
 		return search.best, nil
 	}
 	starts := l.unstable(&z)
-	if wet, dry, ok := starts.extremes(); ok && search.try(&wet, &dry) {
+	if wet, dry, ok := starts.extremes(); ok && search.try(&wet, &dry, flashSoon) {
 		return search.best, nil
 	}
 	for i := range starts.n {
-		search.try(&starts.found[i], &z)
+		search.try(&starts.found[i], &z, flashPatience)
 	}
 	if !search.best.Exists {
 		return TernarySplit{}, search.failed
@@ -108,8 +108,8 @@ type splitSearch struct {
 }
 
 // try refines a split from the ratios of two trial layers.
-func (s *splitSearch) try(a, b *Fractions) (better bool) {
-	found, err := s.refine(&s.z, lnRatio(a, b))
+func (s *splitSearch) try(a, b *Fractions, outsideFor int) (better bool) {
+	found, err := s.refine(&s.z, lnRatio(a, b), outsideFor)
 	if err != nil {
 		s.failed = err
 	}
@@ -154,11 +154,13 @@ const (
 	flashTolerance     = 1e-10
 	flashNear          = 0.05 // residual below which Newton's method starts at once
 	flashRest          = 3    // substitutions after a Newton step that failed
+	flashSoon          = 8    // rounds after which a feed outside the layers is given up
 )
 
 // refine solves ln K_i = ln gamma_i' - ln gamma_i" for the ratios K_i = x_i"/x_i'
 // of two layers, whose amounts follow from the balance (Rachford & Rice, 1952).
-func (l *liquid) refine(z *Fractions, lnK Fractions) (TernarySplit, error) {
+// For outsideFor rounds the feed may lie outside the layers.
+func (l *liquid) refine(z *Fractions, lnK Fractions, outsideFor int) (TernarySplit, error) {
 	p, ok := l.layersOf(z, lnK)
 	wait := flashSubstitutions
 	if p.size < flashNear {
@@ -172,7 +174,7 @@ func (l *liquid) refine(z *Fractions, lnK Fractions) (TernarySplit, error) {
 		if largest(&p.lnK) < 1e-6 {
 			return TernarySplit{}, nil // both layers have become the feed
 		}
-		if i > flashSubstitutions+3 && !(p.share > 0 && p.share < 1) {
+		if i > outsideFor && !(p.share > 0 && p.share < 1) {
 			break // the feed lies outside the layers, and stays there
 		}
 		next, better := partition{}, false

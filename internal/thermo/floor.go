@@ -18,6 +18,17 @@ type Floor struct {
 
 const smallestMoleFraction = 1e-9
 
+// WarmReceiver is a receiver in which the condensate would boil.
+type WarmReceiver struct {
+	Solvent                       string
+	ReceiverK, BoilsK, PressurePa float64
+}
+
+func (e *WarmReceiver) Error() string {
+	return fmt.Sprintf("the receiver at %.1f °C is not below %.1f °C, where wet %s boils at %.4g kPa",
+		e.ReceiverK-273.15, e.BoilsK-273.15, e.Solvent, e.PressurePa/1e3)
+}
+
 // TrapFloor solves y_w(x_pot, T_b) = x_w,sat(T_rec) for the pot. A receiver that
 // gives no layers has no floor; Reason says why.
 func (m *Mixture) TrapFloor(receiverK, pressurePa float64) (Floor, error) {
@@ -37,8 +48,7 @@ func (m *Mixture) TrapFloor(receiverK, pressurePa float64) (Floor, error) {
 		return Floor{}, err
 	}
 	if receiverK >= wet.TempK {
-		return Floor{}, fmt.Errorf("the receiver at %.1f °C is not below %.1f °C, where wet %s boils at %.4g kPa",
-			receiverK-273.15, wet.TempK-273.15, m.Solvent.Key, pressurePa/1e3)
+		return Floor{}, &WarmReceiver{m.Solvent.Key, receiverK, wet.TempK, pressurePa}
 	}
 	var failed error
 	guess := dryBoil

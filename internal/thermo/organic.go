@@ -31,6 +31,19 @@ func (o *OrganicLayer) Water(r, tK float64) (water float64, ok bool) {
 	return o.W0 + math.Exp(o.P0+ln*(o.P1+o.P2*ln)), true
 }
 
+// taper is the part of the range of ln r, at each end, over which the correlation is
+// phased in, so that a split does not jump where its range ends.
+const taper = 0.05
+
+// weight of the correlation at r: 1 inside its range, 0 outside.
+func (o *OrganicLayer) weight(r, tK float64) float64 {
+	if _, ok := o.Water(r, tK); !ok {
+		return 0
+	}
+	edge := taper * math.Log(o.RMax/o.RMin)
+	return math.Min(1, math.Min(math.Log(r/o.RMin), math.Log(o.RMax/r))/edge)
+}
+
 // Rewet moves water between the layers of a split until the organic layer holds
 // what the correlation gives, times factor, and the aqueous layer keeps its
 // composition. Where the correlation does not hold, the water that the split
@@ -41,36 +54,39 @@ func (m *Ternary) Rewet(s TernarySplit, z Fractions, tK float64, o *OrganicLayer
 		return s, false
 	}
 	organic := m.Mass(s.Organic)
-	_, known = o.Water(alcoholShare(organic), tK)
-	if !known && factor == 1 {
+	weight := o.weight(alcoholShare(organic), tK)
+	if weight == 0 && factor == 1 {
 		return s, false
 	}
-	goal := func(w Fractions) float64 {
-		if water, ok := o.Water(alcoholShare(w), tK); ok && known {
-			return factor * water
+	lnGoal := func(w Fractions) float64 {
+		ln := math.Log(factor * organic[InWater])
+		if weight > 0 {
+			water, _ := o.Water(math.Max(o.RMin, math.Min(o.RMax, alcoholShare(w))), tK)
+			ln += weight * math.Log(water/organic[InWater])
 		}
-		return factor * organic[InWater]
+		return ln
 	}
 	feed := m.Mass(z)
 	aqueous := m.Mass(s.Aqueous)
 	excess := func(share float64) float64 { // of water in what is left when a mass share of aqueous layer is taken
 		left := without(feed, aqueous, share)
-		return math.Log(left[InWater] / goal(left))
+		return math.Log(left[InWater]) - lnGoal(left)
 	}
-	most := feed[InWater] / aqueous[InWater] * (1 - 1e-12)
+	most := 1.0
 	for i := range feed {
-		most = math.Min(most, feed[i]/aqueous[i]*(1-1e-12))
+		most = math.Min(most, feed[i]/aqueous[i])
 	}
 	if !(excess(0) > 0) {
-		return TernarySplit{}, known
+		return TernarySplit{}, weight > 0
 	}
-	share, err := Brent(excess, 0, most, 1e-12)
+	share, err := Brent(excess, 0, most*(1-1e-12), 1e-12)
 	if err != nil {
 		return s, false
 	}
-	wet = TernarySplit{Exists: true, Organic: m.Mole(without(feed, aqueous, share)), Aqueous: s.Aqueous}
+	wet = s
+	wet.Organic = m.Mole(without(feed, aqueous, share))
 	wet.AqueousShare = share / m.MolarMass(s.Aqueous) * m.MolarMass(z)
-	return wet, known
+	return wet, weight > 0
 }
 
 // alcoholShare is alcohol/(alcohol + carrier) by mass.

@@ -4,18 +4,19 @@ import "math"
 
 // unstableTrials are liquids that lie below the tangent plane of a feed, lowest first.
 type unstableTrials struct {
-	found    [3]Fractions
-	distance [3]float64
+	found    [trialStarts]Fractions
+	distance [trialStarts]float64
 	n        int
 }
 
 // unstable tests a liquid z by the distance of trial liquids from the tangent
 // plane of its Gibbs energy (Michelsen, Fluid Phase Equilib. 9 (1982) 1), from
-// nearly pure water, a solvent-rich and a nearly pure carrier start. No trial
-// found means that z is stable as far as these starts can tell.
+// nearly pure water, a solvent-rich and a nearly pure carrier start, and from half
+// feed and half water. No trial found means that z is stable as far as these
+// starts can tell.
 func (l *liquid) unstable(z *Fractions) (t unstableTrials) {
 	plane := l.plane(z)
-	for start := range z {
+	for start := range trialStarts {
 		if y, distance, ok := l.descend(z, &plane, trialFrom(z, start)); ok {
 			t.add(y, distance)
 		}
@@ -26,7 +27,7 @@ func (l *liquid) unstable(z *Fractions) (t unstableTrials) {
 // isUnstable is unstable as far as the first trial found.
 func (l *liquid) isUnstable(z *Fractions) bool {
 	plane := l.plane(z)
-	for start := range z {
+	for start := range trialStarts {
 		if _, _, ok := l.descend(z, &plane, trialFrom(z, start)); ok {
 			return true
 		}
@@ -42,12 +43,20 @@ func (l *liquid) plane(z *Fractions) Fractions {
 	return plane
 }
 
-// trialFrom is nearly pure in one component, with some of the feed.
-func trialFrom(z *Fractions, component int) (trial Fractions) {
-	for i := range trial {
-		trial[i] = 0.01 * z[i]
+// trialStarts is the number of starts; those below three are the components.
+const trialStarts = 4
+
+// trialFrom is a start: nearly pure in one component with some of the feed, or
+// half feed and half water.
+func trialFrom(z *Fractions, start int) (trial Fractions) {
+	share, component := 0.99, start
+	if start >= len(z) {
+		share, component = 0.5, InWater
 	}
-	trial[component] += 0.99
+	for i := range trial {
+		trial[i] = (1 - share) * z[i]
+	}
+	trial[component] += share
 	return trial
 }
 

@@ -120,7 +120,7 @@ func (m *Ternary) bubble(x *Fractions, pressurePa, guessK float64) (tK float64, 
 	if !ok {
 		lo, hi := m.searchRange()
 		if tK, err = Brent(excess, lo, hi, temperatureToleranceK); err != nil {
-			return math.NaN(), y, fmt.Errorf("%s at %.4g kPa: no bubble point: %w", m.name(), pressurePa/1e3, err)
+			return math.NaN(), y, fmt.Errorf("%s, x = %.4g, %.4g kPa: no bubble point: %w", m.name(), *x, pressurePa/1e3, err)
 		}
 	}
 	partial, sum := m.partials(x, tK)

@@ -282,3 +282,94 @@ func TestTernaryAzeotropes(t *testing.T) {
 		t.Errorf("%d of %d within %g K and %g wt%%", good, len(rows), withinK, withinPercent)
 	}
 }
+
+// A boiling liquid fulfils its conditions, and does not depend on where the
+// search came from.
+func TestBoilConditions(t *testing.T) {
+	mixtures := fromPairs(t)
+	keys := sorted(mixtures)
+	rapid.Check(t, func(rt *rapid.T) {
+		m := mixtures[rapid.SampledFrom(keys).Draw(rt, "mixture")]
+		x := drawFractions(rt, 1e-6)
+		pressurePa := rapid.Float64Range(5e3, 110e3).Draw(rt, "P")
+		b, err := m.Boil(x, pressurePa, thermo.Boiling{})
+		if err != nil {
+			rt.Fatal(err)
+		}
+		layers := []thermo.Fractions{x}
+		if b.Split.Exists {
+			layers = []thermo.Fractions{b.Split.Organic, b.Split.Aqueous}
+		}
+		for _, layer := range layers {
+			ln := m.LnGamma(layer, b.TempK)
+			for i, xi := range layer {
+				partial := xi * math.Exp(ln[i]) * m.Pure[i].VapourPressurePa.At(b.TempK)
+				if math.Abs(partial/pressurePa-b.Y[i]) > 1e-6*(1e-3+b.Y[i]) {
+					rt.Fatalf("component %d: partial pressure %g, vapour %g", i, partial/pressurePa, b.Y[i])
+				}
+			}
+		}
+		wetter := x
+		wetter[0] *= 1.02
+		near, err := m.Boil(wetter, pressurePa, thermo.Boiling{})
+		if err != nil {
+			rt.Fatal(err)
+		}
+		warm, err := m.Boil(x, pressurePa, near)
+		if err != nil {
+			rt.Fatal(err)
+		}
+		if math.Abs(warm.TempK-b.TempK) > 1e-4 {
+			rt.Fatalf("%g K from nothing, %g K from a neighbour", b.TempK, warm.TempK)
+		}
+	})
+}
+
+func TestSettleByDensity(t *testing.T) {
+	mixtures := fromPairs(t)
+	for _, c := range []struct {
+		pair    [2]string
+		returns thermo.Returns
+	}{
+		{[2]string{"ethanol", "cyclohexane"}, thermo.Light},
+		{[2]string{"acetonitrile", "dichloromethane"}, thermo.Heavy},
+		{[2]string{"tert-butanol", "chloroform"}, thermo.Heavy},
+	} {
+		m := mixtures[c.pair]
+		s, err := m.Flash(m.Mole(thermo.Fractions{0.3, 0.1, 0.6}), 293.15)
+		if err != nil || !s.Exists {
+			t.Fatal(c.pair, s, err)
+		}
+		if l := m.Settle(s, 293.15); l.Return != c.returns {
+			t.Errorf("%v: %s return, organic %.0f, aqueous %.0f kg/m3", c.pair, l.Return, l.OrganicKgPerM3, l.AqueousKgPerM3)
+		}
+	}
+	m := mixtures[[2]string{"methanol", "toluene"}]
+	m.SpuriousGapBelowK = 288.15
+	if _, err := m.Flash(thermo.Fractions{0.2, 0.4, 0.4}, 283.15); err == nil {
+		t.Error("a false gap is flashed")
+	}
+	if l := m.Settle(thermo.TernarySplit{}, 293.15); l.Return != thermo.None || l.Reason == "" {
+		t.Errorf("one liquid: %+v", l)
+	}
+}
+
+func BenchmarkBoil(b *testing.B) {
+	m := fromPairs(b)[[2]string{"ethanol", "cyclohexane"}]
+	near := thermo.Boiling{}
+	for b.Loop() {
+		var err error
+		if near, err = m.Boil(thermo.Fractions{0.02, 0.8, 0.18}, atmospherePa, near); err != nil {
+			b.Fatal(err)
+		}
+	}
+}
+
+func BenchmarkFlash(b *testing.B) {
+	m := fromPairs(b)[[2]string{"ethanol", "cyclohexane"}]
+	for b.Loop() {
+		if _, err := m.Flash(thermo.Fractions{0.13, 0.3, 0.57}, 293.15); err != nil {
+			b.Fatal(err)
+		}
+	}
+}

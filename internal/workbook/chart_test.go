@@ -121,7 +121,7 @@ func TestChartsDrawWhatIsThere(t *testing.T) {
 			t.Errorf("%s is neither a chart of bars nor on a log axis", name)
 		}
 	}
-	size := regexp.MustCompile(`<xdr:oneCellAnchor><xdr:from>[^T]*?</xdr:from><xdr:ext cx="\d{7}" cy="\d{7}"></xdr:ext><xdr:graphicFrame`)
+	size := regexp.MustCompile(`<xdr:oneCellAnchor><xdr:from>[^T]*?</xdr:from><xdr:ext cx="\d{7}" cy="\d{7,8}"></xdr:ext><xdr:graphicFrame`)
 	drawing := string(b.parts["xl/drawings/drawing1.xml"])
 	if n := len(size.FindAllString(drawing, -1)); n != want || strings.Contains(drawing, "twoCellAnchor") {
 		t.Errorf("%d charts are anchored by their size, want %d", n, want)

@@ -65,7 +65,7 @@ func (l *layout) compareCharts(g *grid) {
 			continue
 		}
 		places := rows{lot.routes[0].no - 1, lot.routes[len(lot.routes)-1].no - 1}
-		height := max(300, 130+30*len(lot.routes))
+		height := min(900, max(300, 130+30*len(lot.routes)))
 		row := g.roomForChart(float64(height) * pixelPoints)
 		g.draw(1, row, costWidth, height, fmt.Sprintf("Lot %d: cost", lot.no), l.costChart(lot, places))
 		g.draw(waterColumn, row, waterWidth, height, fmt.Sprintf("Lot %d: water", lot.no), l.waterChart(lot, places))

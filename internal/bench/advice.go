@@ -1,0 +1,275 @@
+package bench
+
+import (
+	"fmt"
+	"math"
+	"strings"
+
+	"parch/internal/assay"
+	"parch/internal/quantity"
+	"parch/internal/routes"
+	"parch/internal/steps"
+)
+
+func (a *Answer) tell(topic, format string, args ...any) {
+	a.Advice = append(a.Advice, Advice{topic, fmt.Sprintf(format, args...)})
+}
+
+// advise says what is worth knowing at the bench.
+func (a *Answer) advise() {
+	switch a.Kind {
+	case steps.Soak:
+		a.adviseSoak()
+	case steps.Column:
+		a.adviseColumn()
+	case steps.Salt:
+		a.adviseSalt()
+	case steps.Trap:
+		a.adviseTrap()
+	case steps.Reactive:
+		a.adviseReactive()
+	}
+	a.adviseHours()
+	for _, l := range a.Losses {
+		if l.SolventKg > 0 {
+			a.tell("lost", "%s of solvent: %s", quantity.FormatVolume(l.SolventKg/a.Question.KgPerM3(0)), l.Cause)
+		}
+	}
+	for _, d := range a.Discards {
+		if d.Kg > 0 {
+			a.tell("waste", "%s of %s waste: %s", weighed(d.Kg), d.Class, d.What)
+		}
+	}
+	a.adviseTest()
+	a.adviseReaction()
+}
+
+// adviseHours tells the hours and the energy of the step from what is done
+// elsewhere for it: activating the beads, handing over what is spent.
+func (a *Answer) adviseHours() {
+	text := fmt.Sprintf("%s h in all, %s h of them attended", quantity.Significant(a.HoursTotal, 3), quantity.Significant(a.OwnHours, 3))
+	if more := a.HoursAttended - a.OwnHours; more > 1e-9 {
+		text += fmt.Sprintf("; %s h of work more: %s", quantity.Significant(more, 3), a.elsewhere("technician"))
+	}
+	a.tell("time", "%s", text)
+	if a.EnergyKWh > 0 || a.CoolingWaterL > 0 {
+		text = quantity.Significant(a.EnergyKWh, 3) + " kWh" + cooling(a.CoolingWaterL)
+		if other := a.elsewhere("electricity"); other != "" {
+			text += "; " + other
+		}
+		a.tell("energy", "%s", text)
+	}
+}
+
+// elsewhere is what is used of an item beside the step itself, in words: the
+// first use of an item is that of the step.
+func (a *Answer) elsewhere(item string) string {
+	var parts []string
+	for _, u := range a.Uses {
+		if own := u.Item == "technician" && strings.HasPrefix(u.Basis, "attended hours"); u.Item == item && !own && !strings.HasSuffix(u.Basis, "x hours") && !strings.HasSuffix(u.Basis, "heater") {
+			parts = append(parts, u.Basis)
+		}
+	}
+	return strings.Join(parts, "; ")
+}
+
+// weighed is a mass as it is weighed at the bench: in g below a kilogram.
+func weighed(kg float64) string {
+	if kg < 1 {
+		return quantity.Format(kg, quantity.Mass, "g", 3)
+	}
+	return quantity.Format(kg, quantity.Mass, "kg", 3)
+}
+
+func cooling(litres float64) string {
+	if litres == 0 {
+		return ""
+	}
+	return fmt.Sprintf(", and %s L of cooling water", quantity.Significant(litres, 3))
+}
+
+func (a *Answer) adviseSoak() {
+	q := a.Question
+	a.tell("sieve", "%s%s", weighed(a.AgentKg), a.takenApart())
+	if q.Activation.Note != "" {
+		a.tell("history", "%s", q.Activation.Note)
+	}
+	a.tell("history", "%s: holds %s g/100 g at the start and %s at the end; no dose and no time pass the floor of %s that this sets",
+		q.Activation.Text, quantity.Significant(100*q.Activation.KgPerKg, 2), quantity.Significant(a.Figure("loading after"), 3), quantity.FormatWater(a.Floor))
+	if next, ok := a.Case.Again(a.asked(), a.Single); ok {
+		a.tell("again", "the same charge, not regenerated, would leave %s in the next such lot; it has taken %s of water",
+			quantity.FormatWater(next), weighed(a.Figure("water taken up")/1e3))
+	}
+	a.adviseOven()
+}
+
+// takenApart says how much of the charge capacity and speed ask for. A solvent
+// that makes water on the sorbent has no such two sizes.
+func (a *Answer) takenApart() string {
+	asked := a.asked()
+	size, err := a.Case.SizeOf(asked, a.Single)
+	if err != nil || !size.Enough || a.Figure("water made by condensation") > 0 {
+		return ""
+	}
+	wanted := a.Out.Water()
+	if given(asked.Goal) && !given(asked.DoseKgPerM3) {
+		wanted = asked.Goal
+	}
+	return fmt.Sprintf("; to come to %s in %s h, %s would do for capacity and %s for speed: %s rules", quantity.FormatWater(wanted),
+		quantity.Significant(size.Hours, 3), weighed(size.CapacityGrams/1e3), weighed(size.SpeedGrams/1e3), size.Ruling)
+}
+
+func (a *Answer) asked() routes.Asked {
+	q := a.Question
+	return routes.Asked{Stage: routes.Stage{Kind: a.Kind, Agent: a.Agent}, Goal: q.Goal, DoseKgPerM3: q.DoseKgPerM3, TimeS: q.TimeS, Stirred: q.Stirred, ResidualLow: q.Activation.Low, ResidualHigh: q.Activation.High}
+}
+
+// ignitionMarginK is kept between an oven and the autoignition temperature of
+// what is on the beads (common practice, no source).
+const ignitionMarginK = 50
+
+func (a *Answer) adviseOven() {
+	margin, ok := a.Case.IgnitionMargin()
+	oven := a.Question.Activation.OvenK
+	switch {
+	case oven == 0:
+		return
+	case !ok && a.Question.Solvent.FlashPoint != nil:
+		a.tell("oven", "no autoignition temperature of %s is known: used beads are flushed free of it with dry gas before an oven at %s", a.Question.Solvent.Name, quantity.FormatTemperature(oven))
+	case ok && margin < ignitionMarginK:
+		a.tell("oven", "%s ignites at %s: used beads are flushed free of it with dry gas before an oven at %s, never put in wet", a.Question.Solvent.Name, a.Question.Solvent.Autoignition.Text, quantity.FormatTemperature(oven))
+	}
+}
+
+func (a *Answer) adviseColumn() {
+	column := a.Case.Catalog.Apparatus[a.Apparatus]
+	a.tell("bed", "%s of beads, %s deep in the %s", weighed(a.AgentKg), quantity.FormatLength(a.Figure("bed length")), column.Name)
+	a.tell("first", "the first %s go back to the feed; the lot is through in %s h of pumping",
+		quantity.FormatVolume(a.Figure("first runnings to return")/1e3), quantity.Significant(a.Figure("pump time"), 3))
+	switch v := a.Figure("volume to breakthrough"); {
+	case v > 0:
+		a.tell("last", "%s is passed after %s", quantity.FormatWater(a.Question.Goal), quantity.FormatVolume(v/1e3))
+	case v == 0:
+		a.tell("last", "the very first of it is above %s", quantity.FormatWater(a.Question.Goal))
+	}
+	a.tell("history", "%s: held %s g/100 g at the start, %s at the end on average", a.Question.Activation.Text,
+		quantity.Significant(100*a.Question.Activation.KgPerKg, 2), quantity.Significant(a.Figure("loading after"), 3))
+	if a.Question.Activation.Note != "" {
+		a.tell("history", "%s", a.Question.Activation.Note)
+	}
+	a.adviseOven()
+}
+
+func (a *Answer) adviseSalt() {
+	a.tell("salt", "%s, stirred in for %s min and filtered off", weighed(a.AgentKg), quantity.Significant(a.Figure("stirred or stood"), 3))
+	for _, r := range a.Question.Agent.Residuals {
+		if r.Solvent == a.Question.Solvent.Key {
+			a.tell("measured", "%s (%s): left %s [%s, %s]", a.Question.Solvent.Name, r.How, r.Water.Text, r.Water.Source, r.Water.Confidence)
+		}
+	}
+}
+
+func (a *Answer) adviseTrap() {
+	charges := a.Figure("still charges")
+	a.tell("receiver", "should show about %s mL of aqueous layer%s; drained %s",
+		quantity.Significant(a.Figure("aqueous layer, each charge"), 3), ofEach(charges), times(a.Figure("drainings, each charge")))
+	proved := steps.ProvedByReading(a.In.MassKg() / charges)
+	a.tell("reading", "repeatable to 0.1 mL, which is %s in this charge: a smaller content cannot be told from the receiver, only by a test", quantity.FormatWater(proved))
+	a.tell("boiling", "%s h to heat up, then %s h of reflux%s; the pot boils at %s °C at the start",
+		quantity.Significant(a.Figure("heat-up, each charge"), 3), quantity.Significant(a.Figure("reflux, each charge"), 3), ofEach(charges),
+		quantity.Significant(a.Figure("boiling temperature at the start"), 4))
+	a.tell("returns", "the %s layer goes back to the pot, the aqueous one is kept", a.Case.Trap.Floor.Return)
+}
+
+func ofEach(charges float64) string {
+	if charges > 1 {
+		return fmt.Sprintf(" in each of %.0f charges", charges)
+	}
+	return ""
+}
+
+func times(n float64) string {
+	switch n {
+	case 1:
+		return "once"
+	case 2:
+		return "twice"
+	}
+	return fmt.Sprintf("%.0f times", n)
+}
+
+func (a *Answer) adviseReactive() {
+	need, charged := a.Figure("agent needed"), a.Figure("agent charged")
+	a.tell("agent", "%s g take up the water, %s g are charged: %s g are surplus and become waste unspent",
+		quantity.Significant(need, 3), quantity.Significant(charged, 3), quantity.Significant(charged-need, 3))
+	now, later := a.Figure("hydrogen while drying"), a.Figure("hydrogen held by the surplus, set free at disposal")
+	if now > 0 || later > 0 {
+		a.tell("hydrogen", "%s L (at 20 °C) come off while drying, %s L are held by the surplus and come off at its disposal: vented, never sealed",
+			quantity.Significant(now, 3), quantity.Significant(later, 3))
+	}
+	class := strings.ReplaceAll(strings.TrimPrefix(a.Question.Agent.Reaction.Waste, "waste-"), "-", " ")
+	a.tell("spent", "goes as %s waste, by people trained for it", class)
+	if left, ok := a.Case.Beside(); ok {
+		a.tell("instead", "without a reactive agent, %s over 100 g/L of sieve 3A, still, %s h, 300 °C furnace, would leave about %s",
+			a.Question.Solvent.Name, quantity.Significant(routes.BesideHours, 3), quantity.FormatWater(left))
+	}
+}
+
+// adviseTest says how the result is shown.
+func (a *Answer) adviseTest() {
+	k, water := a.Case, a.Out.Water()
+	wanted := water
+	if given(a.Question.Goal) {
+		wanted = a.Question.Goal
+	}
+	method := k.Catalog.Assays["coulometric"]
+	if wanted > method.Highest.SI {
+		a.tell("to show", "volumetric Karl Fischer; the coulometric method is advised up to %s", quantity.FormatWater(method.Highest.SI))
+		return
+	}
+	sample := assay.SampleFor(math.Max(wanted, k.Assay.DetectionLimit), method.Sample.High)
+	text := fmt.Sprintf("coulometric Karl Fischer, %s, mean of %d injections", grams(sample.LowKg, sample.HighKg), k.Assay.Injections)
+	limit := assay.Accept(wanted, k.Assay)
+	switch {
+	case given(a.Question.Goal) && limit.CannotShow != "":
+		a.tell("to show", "%s; %s %s", text, quantity.FormatWater(wanted), limit.CannotShow)
+	case given(a.Question.Goal):
+		a.tell("to show", "%s: %s is shown by a mean at or below %s (uncertainty %s, k = 2)", text, quantity.FormatWater(wanted), quantity.FormatWater(limit.AcceptAt), quantity.FormatWater(limit.Uncertainty))
+	case water < k.Assay.DetectionLimit:
+		a.tell("to show", "%s: %s lies under the detection limit of %s and cannot be shown as a number", text, quantity.FormatWater(water), quantity.FormatWater(k.Assay.DetectionLimit))
+	default:
+		a.tell("to show", "%s: good to %s (k = 2)", text, quantity.FormatWater(limit.Uncertainty))
+	}
+	a.adviseKeeping()
+}
+
+func grams(lowKg, highKg float64) string {
+	low, high := quantity.Significant(lowKg*1e3, 2), quantity.Significant(highKg*1e3, 2)
+	if low == high {
+		return low + " g each"
+	}
+	return fmt.Sprintf("%s to %s g each", low, high)
+}
+
+// adviseKeeping says how fast the lot gets wet again.
+func (a *Answer) adviseKeeping() {
+	volume := steps.LotVolume(a.Case.Mixture, a.Out, a.Question.TempK)
+	store := a.Case.Store(&routes.Run{WaterOut: a.Out.Water(), LitresDelivered: volume * 1e3})
+	a.tell("to keep", "under dry gas: with room air (%s) the first tenth drawn adds %s",
+		a.Case.Catalog.Practice["site-humidity"].Text, quantity.FormatWater(store.After(volume/10, 0)-a.Out.Water()))
+}
+
+// adviseReaction says what the water is to a reaction.
+func (a *Answer) adviseReaction() {
+	q := a.Question
+	w := a.Out.Water()
+	kgPerM3 := q.KgPerM3(w)
+	text := fmt.Sprintf("%s of water in the lot at the end", quantity.Format(w*kgPerM3*q.VolumeM3/waterKgPerMol, quantity.Amount, "mmol", 3))
+	if given(q.ReagentMol) {
+		text += fmt.Sprintf(", %s of %s of a reagent used in the whole of it", quantity.FormatOfReagent(w, quantity.Solution{ReagentMol: q.ReagentMol, SolventKg: q.VolumeM3 * kgPerM3}),
+			quantity.Format(q.ReagentMol, quantity.Amount, "mol", 3))
+	}
+	a.tell("reaction", "%s", text)
+}
+
+const waterKgPerMol = 0.018015

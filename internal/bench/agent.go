@@ -1,0 +1,82 @@
+package bench
+
+import (
+	"fmt"
+	"maps"
+	"slices"
+	"strings"
+
+	"parch/catalog"
+	"parch/internal/document"
+	"parch/internal/quantity"
+	"parch/internal/steps"
+)
+
+// agent finds the agent by key or name and sees to it that the step works with it.
+func (r *reader) agent() {
+	r.q.Activation = noActivation()
+	typed, ok := r.flags["agent"]
+	kinds := uses[r.q.Kind].agents
+	if !ok || len(kinds) == 0 {
+		return
+	}
+	agent := findAgent(r.cat, typed)
+	switch {
+	case agent == nil:
+		hint := r.agentsOffered()
+		if near := document.Nearest(typed, slices.Collect(maps.Keys(r.cat.Agents))); len(near) > 0 {
+			hint = "did you mean " + strings.Join(near, " or ") + "?"
+		}
+		r.mistake(fmt.Sprintf("--agent: %s is not a drying agent of the catalog", quantity.Quote(typed)), hint)
+		return
+	case !slices.Contains(kinds, agent.Kind):
+		r.mistake(fmt.Sprintf("--agent: %s is not for %s%s", agent.Key, r.q.Kind, stepFor(agent)), r.agentsOffered())
+		return
+	}
+	r.q.Agent = agent
+	if agent.Isotherm != nil {
+		r.activated()
+	}
+}
+
+func findAgent(c *catalog.Catalog, typed string) *catalog.Agent {
+	for _, key := range slices.Sorted(maps.Keys(c.Agents)) {
+		if a := c.Agents[key]; strings.EqualFold(a.Key, strings.TrimSpace(typed)) || strings.EqualFold(a.Name, strings.TrimSpace(typed)) {
+			return a
+		}
+	}
+	return nil
+}
+
+// stepFor names the step that an agent belongs to.
+func stepFor(a *catalog.Agent) string {
+	for _, k := range []steps.Kind{steps.Salt, steps.Reactive, steps.Soak} {
+		if slices.Contains(uses[k].agents, a.Kind) {
+			return fmt.Sprintf("; ask for the step %s", k)
+		}
+	}
+	return ""
+}
+
+// agentsOffered lists the agents of the step, for the solvent where it is known.
+func (r *reader) agentsOffered() string {
+	var keys []string
+	for _, key := range slices.Sorted(maps.Keys(r.cat.Agents)) {
+		if !slices.Contains(uses[r.q.Kind].agents, r.cat.Agents[key].Kind) {
+			continue
+		}
+		if r.q.Solvent != nil {
+			if v, ok := r.cat.Verdict(r.q.Solvent, key); !ok || !v.Allowed() {
+				continue
+			}
+		}
+		keys = append(keys, key)
+	}
+	if r.q.Solvent == nil {
+		return "agents: " + strings.Join(keys, ", ")
+	}
+	if len(keys) == 0 {
+		return "no agent of this step suits " + r.q.Solvent.Name
+	}
+	return fmt.Sprintf("agents for %s: %s", r.q.Solvent.Name, strings.Join(keys, ", "))
+}

@@ -1,0 +1,145 @@
+package cli
+
+import (
+	"errors"
+	"fmt"
+	"strings"
+
+	"github.com/urfave/cli/v2"
+
+	"parch/catalog"
+	"parch/internal/bench"
+	"parch/internal/report"
+)
+
+func (p *program) step() *cli.Command {
+	return command(cli.Command{
+		Name:      "step",
+		Usage:     "answer one question at the bench: what one step does",
+		UsageText: "parch step KIND --solvent S --water W [flags]",
+		Description: "KIND is settle, trap, salt, soak, column or reactive. No job file and no prices.\n" +
+			"The exit status is 1 where the step is refused or does not reach what --to asks for.",
+		Flags: []cli.Flag{
+			&cli.StringFlag{Name: "solvent", Usage: "the `NAME` of the solvent, by key, name or alias"},
+			&cli.StringFlag{Name: "water", Usage: "water `W` of the lot, with its unit: mg/kg, ppm (by mass), % m/m, mg/L, mmol/L"},
+			&cli.StringFlag{Name: "to", Usage: "water `W` wanted: solves for the dose or the time"},
+			&cli.StringFlag{Name: "agent", Usage: "drying agent `A`, such as sieve-3a"},
+			&cli.StringFlag{Name: "dose", Usage: "dose `D` of the agent per volume, such as \"100 g/L\""},
+			&cli.StringFlag{Name: "hours", Usage: "time `T` of a soak, of stirring with a salt, or of reflux; a bare number is hours"},
+			onOff("stirred", "stir the soak; else it stands still"),
+			&cli.StringFlag{Name: "activated", Usage: "`HISTORY` of the sieve, such as \"300 C\", \"300 C closed hot\", \"250 C, closed hot, 30 d\", opened-tin"},
+			&cli.StringFlag{Name: "volume", Usage: "volume `V` of the lot (default: 1 L)"},
+			&cli.StringFlag{Name: "free-water", Usage: "volume `V` of free water beside the lot"},
+			&cli.StringFlag{Name: "height", Usage: "height `H` of the liquid (default: a vessel as deep as it is wide)"},
+			&cli.StringFlag{Name: "temperature", Usage: "temperature `T` of the lot and the room (default: the catalog's)"},
+			&cli.StringFlag{Name: "power", Usage: "power `P` of the heater (default: the still's own)"},
+			&cli.StringFlag{Name: "receiver", Usage: "temperature `T` of the trap's receiver (default: the catalog's)"},
+			&cli.StringFlag{Name: "pressure", Usage: "pressure `P`, 1 to 110 kPa (default: the catalog's)"},
+			&cli.StringFlag{Name: "peroxide", Usage: "peroxide reading `C`, such as \"0 mg/L\": asked for before a peroxide former is heated"},
+			&cli.StringFlag{Name: "reagent", Usage: "amount `N` of a reagent that the whole lot is used for, such as \"0.5 mol\": water is shown in mol % of it"},
+			&cli.StringFlag{Name: "carrier", Usage: "not available yet"},
+			&cli.StringFlag{Name: "stages", Usage: "not available yet"},
+			catalogFlag(),
+			catalogFlag(),
+			onOff("json", "print JSON"),
+		},
+		Action: p.runStep,
+	})
+}
+
+func (p *program) runStep(c *cli.Context) error {
+	kind, err := oneArgument(c, "a step")
+	if err != nil {
+		return err
+	}
+	cat, err := p.loadCatalog(c)
+	if err != nil {
+		return err
+	}
+	flags, err := flagsOfStep(c)
+	problems := []error{err}
+	request := bench.Request{Kind: kind, Flags: flags, Stirred: c.Bool("stirred")}
+	if c.IsSet("solvent") {
+		request.Solvent, err = findSolvent(cat, c.String("solvent"))
+		problems = append(problems, err)
+	} else {
+		problems = append(problems, misused("step needs --solvent", "solvents: "+strings.Join(solventKeys(cat), ", ")))
+	}
+	question, err := bench.Read(cat, request)
+	if err := errors.Join(append(problems, mistakes(err))...); err != nil {
+		return err
+	}
+	answer, err := bench.Ask(cat, question)
+	if err != nil {
+		return refusedStep(cat, err)
+	}
+	return p.showStep(c, answer)
+}
+
+// flagsOfStep are the flags that were given, by name. Carriers and columns of stages are to come.
+func flagsOfStep(c *cli.Context) (flags map[string]string, err error) {
+	flags = map[string]string{}
+	for _, f := range c.Command.Flags {
+		name := f.Names()[0]
+		if _, holdsOne := f.(*cli.StringFlag); !holdsOne || !c.IsSet(name) {
+			continue
+		}
+		if name == "carrier" || name == "stages" {
+			err = errors.Join(err, misused(fmt.Sprintf("--%s is not available yet", name), ""))
+			continue
+		}
+		flags[name] = c.String(name)
+	}
+	return flags, err
+}
+
+// mistakes are those of a request, as errors of the command line.
+func mistakes(err error) error {
+	if several, ok := err.(interface{ Unwrap() []error }); ok {
+		var all []error
+		for _, e := range several.Unwrap() {
+			all = append(all, mistakes(e))
+		}
+		return errors.Join(all...)
+	}
+	var m *bench.Mistake
+	if errors.As(err, &m) {
+		return misused(m.Message, m.Hint)
+	}
+	return failed(err)
+}
+
+// refusedStep is a step that is not run: with its reason, its source and what
+// may be done.
+func refusedStep(cat *catalog.Catalog, err error) error {
+	var refusal *bench.Refusal
+	if !errors.As(err, &refusal) {
+		return mistakes(err)
+	}
+	message := refusal.Reason
+	if source, ok := cat.Sources[refusal.Source]; ok {
+		message += fmt.Sprintf(" [%s: %s", source.ID, source.Reference)
+		if refusal.Confidence != "" {
+			message += "; " + string(refusal.Confidence)
+		}
+		message += "]"
+	}
+	return &failure{status: statusFailed, err: errors.New(message), hint: refusal.Hint}
+}
+
+// showStep prints the answer. How something was read goes to standard error
+// where JSON leaves no room for it.
+func (p *program) showStep(c *cli.Context, a *bench.Answer) (err error) {
+	if c.Bool("json") {
+		for _, note := range a.Question.Notes {
+			fmt.Fprintln(p.stderr, note)
+		}
+		err = report.StepJSON(p.stdout, a)
+	} else {
+		err = report.StepText(p.stdout, a)
+	}
+	if missed := a.Missed(); err == nil && missed != "" {
+		err = errors.New(missed)
+	}
+	return failed(err)
+}

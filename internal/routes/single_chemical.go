@@ -1,0 +1,122 @@
+package routes
+
+import (
+	"fmt"
+	"math"
+
+	"parch/catalog"
+	"parch/internal/steps"
+)
+
+// singleSalt stirs in the dose that is given, the least that reaches the goal, or
+// the usual one: also where no dose reaches the goal and more of it is no help.
+func (c *Case) singleSalt(a Asked, s *Single) (err error) {
+	agent := c.Catalog.Agents[a.Agent]
+	rules, rig := c.saltRules(agent), c.saltRig(a.TimeS)
+	dose := rules.ClaimDoseKgPerM3
+	if given(a.DoseKgPerM3) {
+		dose = a.DoseKgPerM3
+	}
+	s.Outcome, err = steps.RunSalt(c.Mixture, c.Feed, dose, c.salt(agent), rules, rig)
+	if err == nil && given(a.Goal) && !given(a.DoseKgPerM3) {
+		var solved steps.Outcome
+		solved, err = steps.SaltFor(c.Mixture, c.Feed, a.Goal, c.salt(agent), rules, rig)
+		if solved.AgentKg < s.AgentKg || solved.Out.Water() < s.Out.Water()*(1-1e-9) {
+			s.Outcome = solved
+		}
+	}
+	if err != nil {
+		return err
+	}
+	return c.bandOfSalt(agent, s, rules, rig)
+}
+
+func (c *Case) saltRules(a *catalog.Agent) steps.SaltRules {
+	return steps.SaltRules{
+		LowestOutlet: a.Claim.Least.SI, LowestTarget: a.Claim.Target.SI,
+		ClaimTimeS: c.practice("salt-contact"), ClaimDoseKgPerM3: a.Claim.Dose.SI,
+	}
+}
+
+func (c *Case) saltRig(timeS float64) steps.SaltRig {
+	if !given(timeS) {
+		timeS = c.practice("salt-contact")
+	}
+	_, portions := c.vessel()
+	return steps.SaltRig{TempK: c.Job.Site.RoomK, TimeS: timeS, AttendedS: c.practice("salt-attended"), Portions: portions}
+}
+
+// bandOfSalt takes the share removed and the activities of the hydrates to both
+// ends.
+func (c *Case) bandOfSalt(agent *catalog.Agent, s *Single, rules steps.SaltRules, rig steps.SaltRig) error {
+	removed := agent.Claim.Removed
+	if other, ok := agent.Claim.Except[c.Solvent.Key]; ok {
+		removed = other
+	}
+	if !removed.Banded() {
+		return nil
+	}
+	at := func(share float64, activity func(catalog.Value) float64) (float64, error) {
+		salt := c.salt(agent)
+		salt.ShareRemoved = share
+		for i, h := range agent.Hydrates {
+			if h.Activity.Banded() {
+				salt.Pairs[i].Activity = activity(h.Activity)
+			}
+		}
+		o, err := steps.RunSalt(c.Mixture, c.Feed, s.Figure("dose"), salt, rules, rig)
+		return o.Out.Water(), err
+	}
+	var err error
+	if s.Low, err = at(removed.High, func(v catalog.Value) float64 { return v.Low }); err != nil {
+		return err
+	}
+	s.High, err = at(removed.Low, func(v catalog.Value) float64 { return v.High })
+	s.Bands = append(s.Bands, fmt.Sprintf("share removed, %.0f to %.0f %%, and the activity of the salt", 100*removed.Low, 100*removed.High))
+	return err
+}
+
+// singleReactive charges the dose that is given, or need and usual surplus, and
+// refluxes for the time that is given.
+func (c *Case) singleReactive(a Asked, s *Single) (err error) {
+	agent, rig := c.reactiveAgent(a.Agent), c.reactiveRig(a.Agent)
+	if given(a.TimeS) {
+		rig.RefluxS = a.TimeS
+	}
+	if given(a.DoseKgPerM3) {
+		rig.Surplus, rig.LeastKgPerM3 = 1, a.DoseKgPerM3
+	}
+	if s.Outcome, err = steps.RunReactive(c.Mixture, c.Feed, agent, c.measured(c.Catalog.Agents[a.Agent]), rig); err != nil {
+		return err
+	}
+	volumeM3 := steps.LotVolume(c.Mixture, c.Feed, c.Job.Site.RoomK)
+	if need := s.Figure("agent needed") / 1e3 / volumeM3; given(a.DoseKgPerM3) && a.DoseKgPerM3 < need*(1-1e-9) {
+		return fmt.Errorf("%w: %.3g g/L of %s are under the %.3g g/L that the water takes", steps.ErrNoSense, a.DoseKgPerM3, a.Agent, need)
+	}
+	s.Low, s.High = s.Figure("residual, low")*1e-6, s.Figure("residual, high")*1e-6
+	if math.Abs(s.High-s.Low) < 1e-12 {
+		s.Low, s.High = math.NaN(), math.NaN()
+		return nil
+	}
+	s.Bands = append(s.Bands, "what was found for the pair, or else for the class of agent")
+	return nil
+}
+
+func (c *Case) reactiveAgent(key string) steps.ReactiveAgent {
+	a := c.Catalog.Agents[key]
+	re := a.Reaction
+	return steps.ReactiveAgent{
+		Key: key, MolarMassKgPerMol: a.MolarMassKgPerMol(), WaterMolPerMol: re.Water, HydrogenMolPerMol: re.Hydrogen, SolventMolPerMol: re.Solvent,
+		ClassActivity: re.Activity.SI, ClassBand: re.Activity.High / re.Activity.SI, HandlesBelow: re.Feed.SI, LeastRefluxS: c.practice("reactive-reflux"),
+	}
+}
+
+func (c *Case) reactiveRig(key string) steps.ReactiveRig {
+	still, charges := c.Still()
+	return steps.ReactiveRig{
+		PressurePa: c.Job.Site.PressurePa, RoomK: c.Job.Site.RoomK, HeaterW: c.heaterW(still), HeatShare: c.practice("heat-share"),
+		RefluxS: c.practice("reactive-reflux"), Surplus: c.Catalog.Agents[key].Reaction.Surplus.SI, LeastKgPerM3: c.practice("reactive-least"),
+		HeelShare: c.practice("forerun-heel"), Charges: charges, SetUpS: c.practice("reactive-attended"),
+		AttendedShare: c.practice("trap-attended-share"), CoolingFlowM3S: c.practice("cooling-flow"), VapourLossPerDay: c.practice("vapour-loss-per-day"),
+	}
+}
