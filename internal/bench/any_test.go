@@ -12,6 +12,7 @@ import (
 
 	"parch/catalog"
 	"parch/internal/bench"
+	"parch/internal/steps"
 )
 
 // What people and accidents type into flags.
@@ -30,7 +31,11 @@ var typed = map[string][]string{
 	"height":      {"8 cm", "5 m"},
 	"activated":   {"300 C", "300 C closed hot", "opened-tin", "150 C, left open, 400 d", "20 C vacuum 1 Pa", "650 C closed hot", ","},
 	"reagent":     {"0.5 mol", "0 mol"},
-	"agent":       {"sieve-3a", "silica-gel", "magnesium-sulfate", "sodium", "calcium oxide", "gold"},
+}
+
+var agents = map[steps.Kind][]string{
+	steps.Soak: {"sieve-3a", "silica-gel"}, steps.Column: {"sieve-4a", "alumina"}, steps.Salt: {"magnesium-sulfate", "sodium-sulfate"},
+	steps.Reactive: {"calcium oxide", "calcium-hydride"}, steps.Trap: {"gold"}, steps.Settle: {"sodium"},
 }
 
 // Any question is answered with finite numbers, refused with a reason or said to
@@ -38,21 +43,26 @@ var typed = map[string][]string{
 func TestAnyQuestion(t *testing.T) {
 	c := shelf(t)
 	solvents := slices.DeleteFunc(slices.Sorted(maps.Keys(c.Solvents)), func(key string) bool { return c.Solvents[key].Water == nil })
+	answered := 0
 	rapid.Check(t, func(rt *rapid.T) {
+		kind := rapid.SampledFrom(bench.Kinds).Draw(rt, "kind")
 		flags := map[string]string{}
+		if rapid.IntRange(0, 19).Draw(rt, "agent") > 0 && slices.Contains(bench.Takes(kind), "agent") {
+			flags["agent"] = rapid.SampledFrom(agents[kind]).Draw(rt, "agent")
+		} else if rapid.IntRange(0, 19).Draw(rt, "wrong agent") == 0 {
+			flags["agent"] = rapid.SampledFrom(slices.Concat(agents[steps.Soak], agents[steps.Trap], agents[steps.Settle])).Draw(rt, "agent")
+		}
 		for _, name := range slices.Sorted(maps.Keys(typed)) {
-			// The first values make sense, and are the likely ones.
-			if n := rapid.IntRange(0, 2*len(typed[name])).Draw(rt, name); n > 0 {
-				flags[name] = typed[name][max(0, n-1-len(typed[name]))]
+			unusual := rapid.IntRange(0, 9).Draw(rt, name) == 0
+			switch takes := slices.Contains(bench.Takes(kind), name); {
+			case !takes && rapid.IntRange(0, 99).Draw(rt, name+" all the same") > 0, takes && name != "water" && rapid.Bool().Draw(rt, "no "+name):
+			case unusual:
+				flags[name] = rapid.SampledFrom(typed[name]).Draw(rt, name)
+			default: // those that come first make sense
+				flags[name] = rapid.SampledFrom(typed[name][:2]).Draw(rt, name)
 			}
 		}
-		kind := string(rapid.SampledFrom(bench.Kinds).Draw(rt, "kind"))
-		for name := range flags {
-			if !rapid.Bool().Draw(rt, "keep "+name) && name != "water" {
-				delete(flags, name)
-			}
-		}
-		q, err := bench.Read(c, bench.Request{Kind: kind, Solvent: c.Solvents[rapid.SampledFrom(solvents).Draw(rt, "solvent")], Flags: flags})
+		q, err := bench.Read(c, bench.Request{Kind: string(kind), Solvent: c.Solvents[rapid.SampledFrom(solvents).Draw(rt, "solvent")], Flags: flags})
 		if err != nil {
 			toldWhole(rt, err)
 			return
@@ -62,6 +72,7 @@ func TestAnyQuestion(t *testing.T) {
 			toldWhole(rt, err)
 			return
 		}
+		answered++
 		for _, x := range []float64{a.In.Water(), a.Out.Water(), a.Floor, a.HoursTotal, a.HoursAttended, a.EnergyKWh, a.AgentKg, a.SolventLostL} {
 			if math.IsNaN(x) || math.IsInf(x, 0) || x < 0 {
 				rt.Fatalf("%v: %+v", flags, a.Outcome)
@@ -73,6 +84,10 @@ func TestAnyQuestion(t *testing.T) {
 			}
 		}
 	})
+	if !t.Failed() && answered == 0 {
+		t.Errorf("no question was answered")
+	}
+	t.Logf("%d answered", answered)
 }
 
 // toldWhole: each error is a mistake or a refusal with words.

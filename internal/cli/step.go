@@ -40,7 +40,6 @@ func (p *program) step() *cli.Command {
 			&cli.StringFlag{Name: "carrier", Usage: "not available yet"},
 			&cli.StringFlag{Name: "stages", Usage: "not available yet"},
 			catalogFlag(),
-			catalogFlag(),
 			onOff("json", "print JSON"),
 		},
 		Action: p.runStep,

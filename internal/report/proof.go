@@ -52,7 +52,7 @@ func (p *page) tallies(heading string, all []proof.Tally, name func(proof.Tally)
 		}
 	}
 	p.line("")
-	p.table([]column{{heading, false, 0}, {"Rows", true, 0}, {"Within limit", true, 0}, {"", true, 0}, {"Excused", true, 0}, {"Missed", true, 0}, {"Computed / published", false, 0}}, rows)
+	p.table([]column{{heading, false, 0}, {"Rows", true, 0}, {"Within", true, 0}, {"", true, 0}, {"Excused", true, 0}, {"Missed", true, 0}, {"Computed : published", false, 0}}, rows)
 }
 
 func ratios(t proof.Tally) string {

@@ -59,12 +59,27 @@ func (c *Case) receiver() (*catalog.Apparatus, error) {
 
 // Still is the smallest that takes the batch in one charge, or the largest.
 func (c *Case) Still() (a *catalog.Apparatus, charges int) {
-	return smallestThatFits(c.pieces("still"), c.volume())
+	return smallestThatFits(c.ownedOrAll("still"), c.volume())
 }
 
 // vessel is the smallest that takes the batch, or several of the largest.
 func (c *Case) vessel() (a *catalog.Apparatus, count int) {
-	return smallestThatFits(c.pieces("vessel"), c.volume())
+	return smallestThatFits(c.ownedOrAll("vessel"), c.volume())
+}
+
+// ownedOrAll are the owned pieces of a kind, or all where none is owned: what is
+// at hand is used before something is bought.
+func (c *Case) ownedOrAll(kind string) []*catalog.Apparatus {
+	all := c.pieces(kind)
+	for i, a := range all {
+		if !c.owned(a.Key) {
+			if i > 0 {
+				return all[:i]
+			}
+			break
+		}
+	}
+	return all
 }
 
 func (c *Case) volume() float64 { return c.Lot.BatchM3 + c.Lot.FreeWaterM3 }

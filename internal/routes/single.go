@@ -4,7 +4,9 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"strings"
 
+	"parch/internal/quantity"
 	"parch/internal/steps"
 )
 
@@ -66,6 +68,9 @@ func (c *Case) Single(a Asked) (Single, error) {
 	default:
 		err = fmt.Errorf("%w: %q", ErrAsked, a.Kind)
 	}
+	if err == nil {
+		err = nothingKept(s.Outcome)
+	}
 	if err != nil {
 		return Single{}, refused(err)
 	}
@@ -73,6 +78,20 @@ func (c *Case) Single(a Asked) (Single, error) {
 	s.Uses = c.account(1, s.Outcome, choice{stirred: a.Stirred, after: Discard})
 	s.HoursAttended, s.EnergyKWh = sum(s.Uses, "technician"), sum(s.Uses, "electricity")
 	return s, nil
+}
+
+// nothingKept refuses a step of which no solvent comes out.
+func nothingKept(o steps.Outcome) error {
+	if o.Out.SolventKg > 0 {
+		return nil
+	}
+	var causes []string
+	for _, l := range o.Losses {
+		if l.SolventKg > 0 {
+			causes = append(causes, l.Cause)
+		}
+	}
+	return refusal{fmt.Errorf("nothing is left of the lot: %s of solvent are %s", quantity.FormatVolume(o.SolventLostL/1e3), strings.Join(causes, ", "))}
 }
 
 func orZero(x float64) float64 {

@@ -53,7 +53,7 @@ func (r *refluxing) march(rate flow, progress func(*state, *condensed) float64, 
 		step = math.Min(step*math.Min(5, 0.9*math.Pow(math.Max(off, 1e-9), -0.2)), carrierLongestStep*total(r.s.pot))
 	}
 	return fmt.Errorf("%s and %s: the distillation did not end in %d steps, at %.3g mg/kg of water in the pot",
-		r.m.Pure[solvent].Key, r.m.Pure[carrier].Key, carrierMostSteps, r.dryness(&r.s)*mgPerKg)
+		r.m.Pure[inSolvent].Key, r.m.Pure[inCarrier].Key, carrierMostSteps, r.dryness(&r.s)*mgPerKg)
 }
 
 // The pair of fifth and fourth order: nodes fall away, since the flow depends on
@@ -180,11 +180,11 @@ func (r *refluxing) note(c *condensed) {
 	mass := r.massKg(r.s.pot)
 	p := Point{
 		Hours: (r.heatUpJ + r.s.heatJ) / r.netW() / secondsPerHour,
-		Water: r.kg(r.s.pot[water], water) / mass, Carrier: r.kg(r.s.pot[carrier], carrier) / mass,
+		Water: r.kg(r.s.pot[inWater], inWater) / mass, Carrier: r.kg(r.s.pot[inCarrier], inCarrier) / mass,
 		BoiledKg: r.s.boiledKg, AqueousM3: r.aqueousM3(), DrawnM3: r.liquidM3(r.s.drawn, r.rig.RoomK),
 		PotK: c.pot.TempK, HeadK: c.head.TempK,
 	}
-	p.LostShare = math.Max(0, 1-r.s.pot[solvent]/r.charge[solvent])
+	p.LostShare = math.Max(0, 1-r.s.pot[inSolvent]/r.charge[inSolvent])
 	if n := len(r.course); n > 0 && r.course[n-1].Hours == p.Hours {
 		return
 	}

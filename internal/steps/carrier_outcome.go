@@ -18,7 +18,7 @@ func (r *refluxing) outcome(feed Lot) Outcome {
 	drainings := math.Max(1, math.Ceil(r.aqueousM3()/r.rig.UsableVolumeM3-1e-9))
 	o := Outcome{
 		Kind: Trap, In: feed, Floor: math.NaN(),
-		Carrier: r.m.Pure[carrier].Key, CarrierKg: r.plan.DoseKg,
+		Carrier: r.m.Pure[inCarrier].Key, CarrierKg: r.plan.DoseKg,
 		Why: r.why, WhyText: r.reached(),
 		HoursTotal:    (r.rules.SetUpS + n*(hotS+r.rules.ShutDownS)) / secondsPerHour,
 		HoursAttended: (r.rules.SetUpS + n*(hotS*r.rules.AttendedShare+r.rules.ShutDownS+drainings*r.rules.DrainingS)) / secondsPerHour,
@@ -31,8 +31,8 @@ func (r *refluxing) outcome(feed Lot) Outcome {
 	}
 	o.CoolingWaterL = n * o.Condenser.RunM3PerS * (refluxS + stripS) * litrePerM3
 	r.share(&o, n, (refluxS+stripS)/secondsPerDay*r.rules.VapourLossPerDay)
-	o.account(r.m.Pure[solvent], r.rig.RoomK)
-	o.Balance.CarrierAddedKg, o.Balance.CarrierOutKg = r.plan.DoseKg, o.Out.CarrierKg
+	o.account(r.m.Pure[inSolvent], r.rig.RoomK)
+	o.Balance.CarrierAddedKg, o.Balance.CarrierOutKg = r.plan.DoseKg+feed.CarrierKg, o.Out.CarrierKg
 	o.Balance.HeatInJ = n * r.netW() * hotS
 	o.Balance.HeatUsedJ = n * (r.heatUpJ + r.s.heatJ + r.netW()*(refluxS-trapS))
 	r.figures(&o, heatUpS, refluxS, stripS, drainings)
@@ -47,17 +47,17 @@ func (r *refluxing) share(o *Outcome, n, vapourShare float64) {
 	pot := r.s.pot
 	vapour := scaled(pot, vapourShare)
 	keep := scaled(pot, 1-vapourShare)
-	o.Out = Lot{SolventKg: kg(keep, solvent), WaterKg: kg(keep, water), CarrierKg: kg(keep, carrier), TempK: r.rig.RoomK}
+	o.Out = Lot{SolventKg: kg(keep, inSolvent), WaterKg: kg(keep, inWater), CarrierKg: kg(keep, inCarrier), TempK: r.rig.RoomK}
 	regained := 0.0
 	if lowest := r.rules.LowestOutlet / (1 - r.rules.LowestOutlet) * (o.Out.SolventKg + o.Out.CarrierKg); o.Out.WaterKg < math.Min(lowest, o.In.WaterKg) {
 		regained = math.Min(lowest, o.In.WaterKg) - o.Out.WaterKg
 		o.Out.WaterKg += regained
 	}
 	o.Losses = []Loss{
-		{"dissolved in the aqueous layer", kg(r.s.aqueous, solvent)},
-		{"organic layer left in the receiver", kg(r.s.held, solvent)},
-		{"stripped off with the carrier", kg(r.s.drawn, solvent)},
-		{"vapour past the condenser", kg(vapour, solvent)},
+		{"dissolved in the aqueous layer", kg(r.s.aqueous, inSolvent)},
+		{"organic layer left in the receiver", kg(r.s.held, inSolvent)},
+		{"stripped off with the carrier", kg(r.s.drawn, inSolvent)},
+		{"vapour past the condenser", kg(vapour, inSolvent)},
 	}
 	o.Discards = []Discard{
 		{AqueousWaste, "aqueous layer", n * r.massKg(r.s.aqueous)},
@@ -68,9 +68,9 @@ func (r *refluxing) share(o *Outcome, n, vapourShare float64) {
 	for i := range gone {
 		gone[i] = kg(r.s.aqueous, i) + kg(r.s.held, i) + kg(r.s.drawn, i) + kg(vapour, i)
 	}
-	o.Balance.WaterRemovedKg = gone[water] - regained
-	o.Balance.CarrierRemovedKg = gone[carrier]
-	o.CarrierLostKg = gone[carrier]
+	o.Balance.WaterRemovedKg = gone[inWater] - regained
+	o.Balance.CarrierRemovedKg = gone[inCarrier]
+	o.CarrierLostKg = gone[inCarrier]
 }
 
 func (r *refluxing) figures(o *Outcome, heatUpS, refluxS, stripS, drainings float64) {
@@ -89,17 +89,17 @@ func (r *refluxing) figures(o *Outcome, heatUpS, refluxS, stripS, drainings floa
 		{"drainings, each charge", "", drainings},
 		{"water in the pot when the trap stops", "mg/kg", r.dryness(&r.trapped) * mgPerKg},
 		{"carrier left in the product", "mg/kg", o.Out.Carrier() * mgPerKg},
-		{"carrier in the aqueous layer", "kg", float64(r.rig.Charges) * r.kg(r.s.aqueous[carrier], carrier)},
+		{"carrier in the aqueous layer", "kg", float64(r.rig.Charges) * r.kg(r.s.aqueous[inCarrier], inCarrier)},
 		{"stripped off, each charge", "L", r.liquidM3(r.s.drawn, r.rig.RoomK) * litrePerM3},
 		{"band on the water of the organic layer", "factor", math.Max(1, r.widestBand)},
 	}
 }
 
 func (r *refluxing) warn(o *Outcome) {
-	o.Warnings = append(o.Warnings, fmt.Sprintf("the product holds %s of %s", quantity.FormatWater(o.Out.Carrier()), r.m.Pure[carrier].Key))
+	o.Warnings = append(o.Warnings, fmt.Sprintf("the product holds %s of %s", quantity.FormatWater(o.Out.Carrier()), r.m.Pure[inCarrier].Key))
 	if r.stripWhy == AtHeel {
 		o.Warnings = append(o.Warnings, fmt.Sprintf("stripping ends at the heel with %s of %s left, above the limit of %s",
-			quantity.FormatWater(o.Out.Carrier()), r.m.Pure[carrier].Key, quantity.FormatWater(r.plan.CarrierLimit)))
+			quantity.FormatWater(o.Out.Carrier()), r.m.Pure[inCarrier].Key, quantity.FormatWater(r.plan.CarrierLimit)))
 	}
 	if r.widestBand > 1 {
 		o.Warnings = append(o.Warnings, fmt.Sprintf("water in the organic layer rests on %s: within a factor %.2g either way", r.bandBasis, r.widestBand))

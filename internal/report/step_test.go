@@ -1,0 +1,113 @@
+package report_test
+
+import (
+	"bytes"
+	"errors"
+	"fmt"
+	"maps"
+	"slices"
+	"strings"
+	"testing"
+	"unicode/utf8"
+
+	"github.com/google/go-cmp/cmp"
+
+	"parch/catalog"
+	"parch/internal/bench"
+	"parch/internal/report"
+)
+
+// askedOf are questions of every kind, answered or refused as the solvent has it.
+var askedOf = []bench.Request{
+	{Kind: "settle", Flags: map[string]string{"water": "4 %", "free-water": "50 mL", "temperature": "70 F"}},
+	{Kind: "trap", Flags: map[string]string{"water": "300 mg/kg", "to": "30 mg/kg", "peroxide": "0 mg/L"}},
+	{Kind: "salt", Flags: map[string]string{"water": "400 ppm", "agent": "magnesium-sulfate"}},
+	{Kind: "soak", Flags: map[string]string{"water": "300 mg/L", "agent": "sieve-3a", "to": "20 mg/kg", "activated": "250 C, closed hot, 30 d"}},
+	{Kind: "soak", Stirred: true, Flags: map[string]string{"water": "300 mg/kg", "agent": "sieve-4a", "dose": "20 g/L", "hours": "24"}},
+	{Kind: "column", Flags: map[string]string{"water": "300 mg/kg", "agent": "sieve-3a", "to": "20 mg/kg", "volume": "10 L"}},
+	{Kind: "reactive", Flags: map[string]string{"water": "100 mg/kg", "agent": "calcium-hydride", "peroxide": "0 mg/L", "reagent": "0.5 mol"}},
+}
+
+// every solvent answers some of the questions: the text keeps to its width, ends
+// with cautions and sources, and the JSON has the keys of the contract.
+func TestSteps(t *testing.T) {
+	c, err := catalog.Load()
+	if err != nil {
+		t.Fatal(err)
+	}
+	answered := map[string]int{}
+	for _, key := range slices.Sorted(maps.Keys(c.Solvents)) {
+		for _, request := range askedOf {
+			if request.Solvent = c.Solvents[key]; request.Solvent.Water == nil {
+				continue
+			}
+			a := stepAnswer(t, c, request)
+			if a == nil {
+				continue
+			}
+			answered[request.Kind]++
+			checkStep(t, fmt.Sprintf("%s of %s", request.Kind, key), a)
+		}
+	}
+	for _, kind := range bench.Kinds {
+		if answered[string(kind)] < 5 {
+			t.Errorf("%s: only %d solvents answered", kind, answered[string(kind)])
+		}
+	}
+}
+
+// stepAnswer is nil where the step is refused or has no sense.
+func stepAnswer(t *testing.T, c *catalog.Catalog, request bench.Request) *bench.Answer {
+	t.Helper()
+	q, err := bench.Read(c, request)
+	if err != nil {
+		t.Fatal(err)
+	}
+	a, err := bench.Ask(c, q)
+	var refusal *bench.Refusal
+	var mistake *bench.Mistake
+	if err != nil && !errors.As(err, &refusal) && !errors.As(err, &mistake) {
+		t.Fatal(err)
+	}
+	return a
+}
+
+func checkStep(t *testing.T, name string, a *bench.Answer) {
+	t.Helper()
+	var text, doc bytes.Buffer
+	if err := errors.Join(report.StepText(&text, a), report.StepJSON(&doc, a)); err != nil {
+		t.Fatalf("%s: %v", name, err)
+	}
+	for line := range strings.Lines(text.String()) {
+		if n := utf8.RuneCountInString(strings.TrimSuffix(line, "\n")); n > 100 {
+			t.Errorf("%s: a line of %d columns: %s", name, n, line)
+		}
+	}
+	for _, odd := range []string{"NaN", "Inf", "%!", "  \n"} {
+		if strings.Contains(text.String(), odd) {
+			t.Errorf("%s: the text holds %q", name, odd)
+		}
+	}
+	cautions, sources := strings.Index(text.String(), "   Cautions:\n"), strings.Index(text.String(), "   Sources:\n")
+	if cautions < 0 || sources < cautions {
+		t.Errorf("%s: cautions at %d, sources at %d", name, cautions, sources)
+	}
+	if diff := cmp.Diff(strings.Fields(stepKeys), strings.Fields(keysOf(t, doc.Bytes()))); diff != "" {
+		t.Errorf("%s (-want +got):\n%s", name, diff)
+	}
+}
+
+// A full answer as it is read at the bench.
+func TestStepText(t *testing.T) {
+	c, err := catalog.Load()
+	if err != nil {
+		t.Fatal(err)
+	}
+	var out bytes.Buffer
+	a := stepAnswer(t, c, bench.Request{Kind: "soak", Solvent: c.Solvents["toluene"], Flags: map[string]string{
+		"water": "225 mg/kg", "agent": "sieve-3a", "dose": "100 g/L", "hours": "24", "activated": "300 C"}})
+	if err := report.StepText(&out, a); err != nil {
+		t.Fatal(err)
+	}
+	golden(t, "step.golden", out.Bytes())
+}

@@ -1,0 +1,141 @@
+package steps
+
+import (
+	"math"
+
+	"parch/internal/thermo"
+)
+
+// condensed is a mole of vapour at the head and what the receiver makes of it.
+type condensed struct {
+	pot, head thermo.Boiling
+	split     thermo.TernarySplit
+}
+
+// climb boils the pot and follows its vapour up the column. At total reflux,
+// and with the organic layer returned it is nearly that, the liquid on a stage
+// is like the vapour that rises to it.
+func (r *refluxing) climb(s *state) (c condensed, err error) {
+	x := s.pot
+	for k := range r.plan.Stages + 1 {
+		if r.near[k], err = r.m.Boil(x, r.eq.PressurePa, r.near[k]); err != nil {
+			return c, err
+		}
+		c.head = r.near[k]
+		if k > 0 && alike(x, c.head.Y) {
+			break // pinched at an azeotrope
+		}
+		x = c.head.Y
+	}
+	c.pot = r.near[0]
+	return c, nil
+}
+
+// alike reports whether a vapour is like its liquid.
+func alike(x, y Fractions) bool {
+	const share = 1e-6
+	for i := range x {
+		if math.Abs(y[i]-x[i]) > share*x[i] {
+			return false
+		}
+	}
+	return true
+}
+
+// condense boils the pot and parts a mole of the head's vapour in the receiver.
+func (r *refluxing) condense(s *state) (c condensed, err error) {
+	if c, err = r.climb(s); err != nil {
+		return c, err
+	}
+	c.split, err = r.part(c.head.Y)
+	return c, err
+}
+
+// part splits amounts or fractions n at the receiver's temperature, with the
+// water of the organic layer from tie-lines where they are known.
+func (r *refluxing) part(n Fractions) (thermo.TernarySplit, error) {
+	z := scaled(n, 1/total(n))
+	split, err := r.m.FlashFrom(z, r.eq.ReceiverK, r.split)
+	if err != nil {
+		return split, err
+	}
+	if split.Exists {
+		r.split = split
+	}
+	wet, _ := r.m.Rewet(split, z, r.eq.ReceiverK, r.eq.Organic, r.plan.OrganicWater)
+	return wet, nil
+}
+
+// flow is the change of state per mole of vapour.
+type flow func(s *state) (state, condensed, error)
+
+// vapour is a mole at the head, kept from the pot. As much vapour leaves the pot
+// (constant molar overflow), whose latent heat counts.
+func (r *refluxing) vapour(c *condensed) state {
+	y := c.head.Y
+	return state{pot: scaled(y, -1), boiledMol: 1, boiledKg: r.massKg(c.pot.Y), heatJ: r.latent(c.pot.Y, c.pot.TempK)}
+}
+
+// filling returns nothing.
+func (r *refluxing) filling(s *state) (state, condensed, error) {
+	c, err := r.climb(s)
+	if err != nil {
+		return state{}, c, err
+	}
+	d := r.vapour(&c)
+	d.held = c.head.Y
+	return d, c, nil
+}
+
+// pushing keeps the organic layer and returns as much dry carrier by volume.
+func (r *refluxing) pushing(s *state) (state, condensed, error) {
+	c, err := r.condense(s)
+	if err != nil {
+		return state{}, c, err
+	}
+	d := r.vapour(&c)
+	organic, aqueous := c.head.Y, Fractions{}
+	if c.split.Exists {
+		organic, aqueous = scaled(c.split.Organic, 1-c.split.AqueousShare), scaled(c.split.Aqueous, c.split.AqueousShare)
+	}
+	d.aqueous, d.held = aqueous, organic
+	d.pushedM3 = total(organic) * r.m.MolarVolume(scaled(organic, 1/total(organic)), r.eq.ReceiverK)
+	returned := Fractions{inCarrier: d.pushedM3 / r.carrierM3()}
+	d.held[inCarrier] -= returned[inCarrier]
+	d.pot[inCarrier] += returned[inCarrier]
+	d.heatJ += r.sensible(returned, r.eq.ReceiverK, c.pot.TempK)
+	return d, c, nil
+}
+
+// returning returns the organic layer of the condensate.
+func (r *refluxing) returning(s *state) (state, condensed, error) {
+	c, err := r.condense(s)
+	if err != nil {
+		return state{}, c, err
+	}
+	aqueous := scaled(c.split.Aqueous, c.split.AqueousShare*r.efficiency(s))
+	if !c.split.Exists {
+		aqueous = Fractions{}
+	}
+	d := r.vapour(&c)
+	d.pot, d.aqueous = scaled(aqueous, -1), aqueous
+	returned := c.head.Y
+	for i := range returned {
+		returned[i] -= aqueous[i]
+	}
+	d.heatJ += r.sensible(returned, r.eq.ReceiverK, c.pot.TempK)
+	return d, c, nil
+}
+
+// stripping draws the head of the column off.
+func (r *refluxing) stripping(s *state) (state, condensed, error) {
+	c, err := r.climb(s)
+	if err != nil {
+		return state{}, c, err
+	}
+	d := r.vapour(&c)
+	d.drawn = c.head.Y
+	boiled := 1 + r.plan.RefluxRatio
+	d.boiledMol, d.boiledKg, d.heatJ = boiled, boiled*d.boiledKg, boiled*d.heatJ
+	return d, c, nil
+}

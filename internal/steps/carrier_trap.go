@@ -1,0 +1,189 @@
+package steps
+
+import (
+	"fmt"
+	"math"
+
+	"parch/internal/quantity"
+	"parch/internal/thermo"
+)
+
+// fill gets the receiver full and the organic layer of it to a place of its own.
+func (r *refluxing) fill() error {
+	if r.plan.PreFilled {
+		return r.march(r.pushing, func(s *state, _ *condensed) float64 { return s.pushedM3 / r.rig.FillVolumeM3 }, ignore)
+	}
+	full := func(s *state, _ *condensed) float64 {
+		n := total(s.held)
+		if n == 0 {
+			return 0
+		}
+		return n * r.m.MolarVolume(scaled(s.held, 1/n), r.eq.ReceiverK) / r.rig.FillVolumeM3
+	}
+	if err := r.march(r.filling, full, ignore); err != nil {
+		return err
+	}
+	split, err := r.part(r.s.held)
+	if err != nil || !split.Exists {
+		return err
+	}
+	n := total(r.s.held)
+	r.s.aqueous = scaled(split.Aqueous, n*split.AqueousShare)
+	for i := range r.s.held {
+		r.s.held[i] -= r.s.aqueous[i]
+	}
+	return nil
+}
+
+// slowestRemoval ends the trap: to boil as much as the whole pot over once more
+// would take less than this share of its water.
+const slowestRemoval = 0.05
+
+// reflux runs the steady return until the goal is reached or the trap can do no more.
+func (r *refluxing) reflux() error {
+	if err := r.firstLayers(); err != nil {
+		return err
+	}
+	goal := math.Max(r.plan.Goal, r.rules.LowestOutlet)
+	r.why = AtTarget
+	if goal > r.plan.Goal {
+		r.why = AtPractice
+	}
+	r.goal, r.trapFromJ, r.trapFromKg = goal, r.s.heatJ, r.massKg(r.s.pot)
+	first, err := r.condense(&r.s)
+	if err != nil || r.dryness(&r.s) <= goal {
+		return err
+	}
+	wet := math.Log(r.dryness(&r.s) / goal)
+	brisk := math.Log(r.briskness(&r.s, &first))
+	lnHeel := math.Log(r.leastKg() / r.trapFromKg)
+	if !(brisk > 0) || lnHeel >= 0 {
+		r.why, r.whyText = r.ended(&r.s, &first)
+		return nil
+	}
+	progress := func(s *state, c *condensed) float64 {
+		if stop, _ := r.blocked(s, c); stop != "" {
+			return math.Inf(1)
+		}
+		done := math.Max(1-math.Log(r.dryness(s)/goal)/wet, 1-math.Log(r.briskness(s, c))/brisk)
+		done = math.Max(done, math.Log(r.massKg(s.pot)/r.trapFromKg)/lnHeel)
+		return math.Max(done, r.timeSpent(s))
+	}
+	var last condensed
+	err = r.march(r.returning, progress, func(s *state, c *condensed) {
+		r.watch(s, c)
+		last = *c
+	})
+	if err == nil && r.dryness(&r.s) > goal*(1+1e-4) {
+		r.why, r.whyText = r.ended(&r.s, &last)
+	}
+	return err
+}
+
+func (r *refluxing) leastKg() float64 { return r.plan.HeelShare * r.massKg(r.charge) }
+
+// briskness is the share of the pot's water that boiling as much as the whole
+// pot over would take at the present rate, over slowestRemoval.
+func (r *refluxing) briskness(s *state, c *condensed) float64 {
+	if !c.split.Exists {
+		return 0
+	}
+	taken := c.split.AqueousShare * c.split.Aqueous[inWater] * r.efficiency(s)
+	return taken * total(s.pot) / s.pot[inWater] / slowestRemoval
+}
+
+// timeSpent is the share of the longest time under the trap.
+func (r *refluxing) timeSpent(s *state) float64 {
+	if r.plan.LongestS <= 0 {
+		return 0
+	}
+	return (s.heatJ - r.trapFromJ) / r.netW() / r.plan.LongestS
+}
+
+func (r *refluxing) efficiency(s *state) float64 {
+	if r.dryness(s) < r.rules.EfficiencyBelow {
+		return r.rules.Efficiency
+	}
+	return 1
+}
+
+// blocked says why the receiver cannot go on with a condensate.
+func (r *refluxing) blocked(s *state, c *condensed) (stop Stop, text string) {
+	pot := quantity.FormatWater(r.dryness(s))
+	l := r.m.Settle(c.split, r.eq.ReceiverK)
+	switch {
+	case !c.split.Exists:
+		return AtOneLayer, fmt.Sprintf("no second layer: the condensate of a pot at %s is one liquid at %.0f °C", pot, r.eq.ReceiverK-273.15)
+	case l.Return == thermo.None:
+		return AtExchange, fmt.Sprintf("%s, with %s in the pot", l.Reason, pot)
+	case r.carrierFree(c.split.Aqueous) <= r.dryness(s):
+		return AtFloor, fmt.Sprintf("floor: with %s in the pot the aqueous layer is no wetter", pot)
+	case !r.fits(l.Return):
+		return AtExchange, fmt.Sprintf("the layers change places with %s in the pot: organic %.0f, aqueous %.0f kg/m3", pot, l.OrganicKgPerM3, l.AqueousKgPerM3)
+	}
+	return "", ""
+}
+
+// ended says why a trap that has not reached its goal has come to its end.
+func (r *refluxing) ended(s *state, c *condensed) (stop Stop, text string) {
+	if stop, text = r.blocked(s, c); stop != "" {
+		return stop, text
+	}
+	pot := quantity.FormatWater(r.dryness(s))
+	switch {
+	case r.timeSpent(s) > 1-1e-4:
+		return AtTime, fmt.Sprintf("time: %.3g h under the trap are over, with %s in the pot", r.plan.LongestS/secondsPerHour, pot)
+	case r.massKg(s.pot) < r.leastKg()*(1+1e-3):
+		return AtHeel, fmt.Sprintf("heel: the aqueous layer has taken all but %.0f %% of the charge", 100*r.plan.HeelShare)
+	}
+	return AtFloor, fmt.Sprintf("floor: with %s in the pot hardly any second layer forms at %.0f °C", pot, r.eq.ReceiverK-273.15)
+}
+
+// watch notes what changes at an accepted step: the return needed, and how well
+// the water of the organic layer is known.
+func (r *refluxing) watch(s *state, c *condensed) {
+	if !c.split.Exists {
+		return
+	}
+	if factor, basis := r.eq.Band(r.m.Mass(c.split.Organic)); factor > r.widestBand {
+		r.widestBand, r.bandBasis = factor, basis
+	}
+	if l := r.m.Settle(c.split, r.eq.ReceiverK); l.Return != r.returns && l.Return != thermo.None {
+		r.warnings = append(r.warnings, fmt.Sprintf("the layers change places with %s in the pot: from here on the receiver must return the %s one",
+			quantity.FormatWater(r.dryness(s)), l.Return))
+		r.returns = l.Return
+	}
+}
+
+// firstLayers checks that the condensate splits, and the return fits.
+func (r *refluxing) firstLayers() error {
+	c, err := r.condense(&r.s)
+	if err != nil {
+		return err
+	}
+	l := r.m.Settle(c.split, r.eq.ReceiverK)
+	if l.Return == thermo.None {
+		w := r.m.Mass(c.head.Y)
+		return fmt.Errorf("%w: %s; it holds %.3g %% water, %.3g %% %s and %.3g %% %s", ErrNoCarrier, l.Reason,
+			100*w[inWater], 100*w[inSolvent], r.m.Pure[inSolvent].Key, 100*w[inCarrier], r.m.Pure[inCarrier].Key)
+	}
+	r.returns = l.Return
+	if !r.fits(l.Return) {
+		return fmt.Errorf("%w: the layers need a %s return (organic %.0f, aqueous %.0f kg/m3), the receiver returns the %s layer",
+			ErrNoCarrier, l.Return, l.OrganicKgPerM3, l.AqueousKgPerM3, r.rig.Returns)
+	}
+	if layer, pot := r.carrierFree(c.split.Aqueous), r.dryness(&r.s); layer <= pot {
+		return fmt.Errorf("%w: without the carrier the aqueous layer holds %.3g %% water, the pot %.3g %%: the solvent would leave first",
+			ErrNoCarrier, 100*layer, 100*pot)
+	}
+	return nil
+}
+
+// carrierFree is water/(water + solvent) by mass in a layer.
+func (r *refluxing) carrierFree(layer Fractions) float64 {
+	return r.dryness(&state{pot: layer})
+}
+
+func (r *refluxing) fits(needed thermo.Returns) bool {
+	return r.rig.Returns == "either" || r.rig.Returns == string(needed)
+}
