@@ -48,6 +48,8 @@ var practiceKeys = map[string]quantity.Dimension{
 	"karl-fischer-time":     quantity.Time,
 	"buy-attended":          quantity.Time,
 	"forerun-attended":      quantity.Time,
+	"forerun-reflux":        quantity.Number,
+	"forerun-column":        quantity.Time,
 	"forerun-heel":          quantity.Share,
 	"forerun-discard":       quantity.Share,
 	"salt-attended":         quantity.Time,

@@ -61,12 +61,11 @@ func (a *Answer) adviseHours() {
 	}
 }
 
-// elsewhere is what is used of an item beside the step itself, in words: the
-// first use of an item is that of the step.
+// elsewhere is what is used of an item beside the step itself, in words.
 func (a *Answer) elsewhere(item string) string {
 	var parts []string
-	for _, u := range a.Uses {
-		if own := u.Item == "technician" && strings.HasPrefix(u.Basis, "attended hours"); u.Item == item && !own && !strings.HasSuffix(u.Basis, "x hours") && !strings.HasSuffix(u.Basis, "heater") {
+	for _, u := range a.Elsewhere {
+		if u.Item == item {
 			parts = append(parts, u.Basis)
 		}
 	}

@@ -17,26 +17,29 @@ func (p *program) step() *cli.Command {
 		Name:      "step",
 		Usage:     "answer one question at the bench: what one step does",
 		UsageText: "parch step KIND --solvent S --water W [flags]",
-		Description: "KIND is settle, trap, salt, soak, column or reactive. No job file and no prices.\n" +
+		Description: "KIND is settle, trap, salt, soak, column or reactive. No job file and no prices. HISTORY is an\n" +
+			"oven's temperature with what was done after it (\"250 C, closed hot, 30 d\", \"200 C, vacuum 1 hPa\"),\n" +
+			"or a key of the catalog such as opened-tin.\n" +
+			"A soak takes two of --dose, --hours and --to; with --to alone it sizes overnight, 24 h and 72 h.\n" +
 			"The exit status is 1 where the step is refused or does not reach what --to asks for.",
 		Flags: []cli.Flag{
 			&cli.StringFlag{Name: "solvent", Usage: "the `NAME` of the solvent, by key, name or alias"},
-			&cli.StringFlag{Name: "water", Usage: "water `W` of the lot, with its unit: mg/kg, ppm (by mass), % m/m, mg/L, mmol/L"},
+			&cli.StringFlag{Name: "water", Usage: "water `W` of the lot: mg/kg, ppm (mass), % m/m, mg/L, mmol/L"},
 			&cli.StringFlag{Name: "to", Usage: "water `W` wanted: solves for the dose or the time"},
 			&cli.StringFlag{Name: "agent", Usage: "drying agent `A`, such as sieve-3a"},
 			&cli.StringFlag{Name: "dose", Usage: "dose `D` of the agent per volume, such as \"100 g/L\""},
-			&cli.StringFlag{Name: "hours", Usage: "time `T` of a soak, of stirring with a salt, or of reflux; a bare number is hours"},
+			&cli.StringFlag{Name: "hours", Usage: "time `T` of soak, salt or reflux; a bare number is hours"},
 			onOff("stirred", "stir the soak; else it stands still"),
-			&cli.StringFlag{Name: "activated", Usage: "`HISTORY` of the sieve, such as \"300 C\", \"300 C closed hot\", \"250 C, closed hot, 30 d\", opened-tin"},
+			&cli.StringFlag{Name: "activated", Usage: "`HISTORY` of the sieve, such as \"300 C closed hot\""},
 			&cli.StringFlag{Name: "volume", Usage: "volume `V` of the lot (default: 1 L)"},
 			&cli.StringFlag{Name: "free-water", Usage: "volume `V` of free water beside the lot"},
-			&cli.StringFlag{Name: "height", Usage: "height `H` of the liquid (default: a vessel as deep as it is wide)"},
+			&cli.StringFlag{Name: "height", Usage: "height `H` of the liquid (default: as deep as wide)"},
 			&cli.StringFlag{Name: "temperature", Usage: "temperature `T` of the lot and the room (default: the catalog's)"},
 			&cli.StringFlag{Name: "power", Usage: "power `P` of the heater (default: the still's own)"},
 			&cli.StringFlag{Name: "receiver", Usage: "temperature `T` of the trap's receiver (default: the catalog's)"},
 			&cli.StringFlag{Name: "pressure", Usage: "pressure `P`, 1 to 110 kPa (default: the catalog's)"},
-			&cli.StringFlag{Name: "peroxide", Usage: "peroxide reading `C`, such as \"0 mg/L\": asked for before a peroxide former is heated"},
-			&cli.StringFlag{Name: "reagent", Usage: "amount `N` of a reagent that the whole lot is used for, such as \"0.5 mol\": water is shown in mol % of it"},
+			&cli.StringFlag{Name: "peroxide", Usage: "peroxide reading `C`, wanted before a peroxide former is heated"},
+			&cli.StringFlag{Name: "reagent", Usage: "amount `N` of a reagent in the lot: water in mol % of it"},
 			&cli.StringFlag{Name: "carrier", Usage: "not available yet"},
 			&cli.StringFlag{Name: "stages", Usage: "not available yet"},
 			catalogFlag(),

@@ -18,7 +18,7 @@ func ProofText(w io.Writer, r *proof.Result, catalogDate string) error {
 	p := &page{w: w}
 	p.say(0, 2, "Published against computed: %d figures, catalog of %s", len(r.Rows), catalogDate)
 	p.line("")
-	p.say(3, 0, "independent: not used to make the numbers that it tests. fitted: was a target of the fit that it tests. memory: recalled, not seen in print; it is shown and decides nothing.")
+	p.say(3, 0, "independent: not used to make the numbers that it tests. fitted: was a target of the fit that it tests. memory: recalled, not seen in print; it is shown and decides nothing. Ratio and × are computed over published.")
 	p.tallies("Kind", r.Kinds, func(t proof.Tally) string { return string(t.Kind) })
 	p.tallies("Quantity, kind", r.Quantities, func(t proof.Tally) string { return t.Quantity + ", " + string(t.Kind) })
 	sources := sourcesOf(r)
@@ -52,7 +52,7 @@ func (p *page) tallies(heading string, all []proof.Tally, name func(proof.Tally)
 		}
 	}
 	p.line("")
-	p.table([]column{{heading, false, 0}, {"Rows", true, 0}, {"Within", true, 0}, {"", true, 0}, {"Excused", true, 0}, {"Missed", true, 0}, {"Computed : published", false, 0}}, rows)
+	p.table([]column{{heading, false, 0}, {"Rows", true, 0}, {"Within", true, 0}, {"", true, 0}, {"Excused", true, 0}, {"Missed", true, 0}, {"Ratio", false, 0}}, rows)
 }
 
 func ratios(t proof.Tally) string {

@@ -137,7 +137,7 @@ func (p *page) sizes(all []steps.SoakSize) {
 			rows[i][4], rows[i][6] = "none helps", s.Advice
 		}
 	}
-	p.table([]column{{"Hours", true, 0}, {"Capacity\ng", true, 0}, {"Speed\ng", true, 0}, {"Charge\ng", true, 0}, {"What rules", false, 12}, {"Reached\nmg/kg", true, 0}, {"", false, 36}}, rows)
+	p.table([]column{{"Hours", true, 0}, {"Capacity\ng", true, 0}, {"Speed\ng", true, 0}, {"Charge\ng", true, 0}, {"What rules", false, 20}, {"Reached\nmg/kg", true, 0}, {"", false, 30}}, rows)
 }
 
 func (p *page) advice(all []bench.Advice) {

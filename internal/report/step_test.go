@@ -96,18 +96,3 @@ func checkStep(t *testing.T, name string, a *bench.Answer) {
 		t.Errorf("%s (-want +got):\n%s", name, diff)
 	}
 }
-
-// A full answer as it is read at the bench.
-func TestStepText(t *testing.T) {
-	c, err := catalog.Load()
-	if err != nil {
-		t.Fatal(err)
-	}
-	var out bytes.Buffer
-	a := stepAnswer(t, c, bench.Request{Kind: "soak", Solvent: c.Solvents["toluene"], Flags: map[string]string{
-		"water": "225 mg/kg", "agent": "sieve-3a", "dose": "100 g/L", "hours": "24", "activated": "300 C"}})
-	if err := report.StepText(&out, a); err != nil {
-		t.Fatal(err)
-	}
-	golden(t, "step.golden", out.Bytes())
-}

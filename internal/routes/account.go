@@ -36,6 +36,12 @@ func (c *Case) account(place int, o steps.Outcome, choice choice) []StageUse {
 		receiver, _ := c.receiver()
 		uses = append(uses, c.wear(place, still, 1)...)
 		uses = append(uses, c.wear(place, receiver, 1)...)
+	case steps.Forerun:
+		still, _ := c.Still()
+		uses = append(uses, c.wear(place, still, 1)...)
+		if column, ok := c.Catalog.Apparatus[o.Apparatus]; ok {
+			uses = append(uses, c.wear(place, column, 1)...)
+		}
 	case steps.Salt:
 		use(steps.Agent, o.Agent, "kg", o.AgentKg, "used once")
 	case steps.Reactive:
@@ -179,7 +185,7 @@ func (c *Case) wholeRoute(run *Run) []StageUse {
 func (c *Case) tests(r Route) float64 {
 	n := 1.0
 	for _, s := range r[:len(r)-1] {
-		if s.Kind == steps.Trap {
+		if s.Kind == steps.Trap || s.Kind == steps.Forerun {
 			n++
 		}
 	}

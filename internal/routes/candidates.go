@@ -50,7 +50,8 @@ func (c *Case) refusedPart(r Route) Route {
 // water by boiling or a salt, the rest over a sorbent or a reactive agent; or a
 // dry grade bought instead.
 func (c *Case) chains() []Route {
-	bulk := []Route{nil, {{Kind: steps.Trap}}}
+	forerun := Stage{Kind: steps.Forerun}
+	bulk := []Route{nil, {{Kind: steps.Trap}}, {forerun}, {{Kind: steps.Trap}, forerun}}
 	for _, salt := range c.agents("salt") {
 		bulk = append(bulk, Route{{Kind: steps.Salt, Agent: salt}})
 	}
@@ -60,6 +61,9 @@ func (c *Case) chains() []Route {
 			head := append(slices.Clone(first), second...)
 			if len(head) > 0 {
 				all = append(all, head)
+			}
+			if c.Trap != nil && head.count(steps.Forerun) > 0 {
+				continue // what a trap returns a forerun would lose: no sieve follows it
 			}
 			for _, last := range c.finishers() {
 				all = append(all, append(slices.Clone(head), last))
@@ -102,6 +106,8 @@ func (c *Case) refuse(r Route) (reason, source string) {
 		switch s.Kind {
 		case steps.Trap:
 			reason, source = c.refuseTrap()
+		case steps.Forerun:
+			reason, source = c.refuseHeating()
 		case steps.Settle:
 			reason, source = c.refuseSettle()
 		case steps.Salt:
@@ -219,6 +225,8 @@ func (c *Case) Label(r Route) string {
 			parts[i] = "settle"
 		case steps.Trap:
 			parts[i] = "boil out under a trap"
+		case steps.Forerun:
+			parts[i] = "draw off a forerun"
 		case steps.Salt:
 			parts[i] = "stir with " + c.Catalog.Agents[s.Agent].Name
 		case steps.Soak:

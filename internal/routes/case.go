@@ -25,7 +25,7 @@ type Case struct {
 	Trap    *steps.TrapEquilibrium // nil where no trap works
 	NoTrap  error                  // why
 
-	traps map[trapKey]steps.Outcome
+	known map[stepKey]result
 }
 
 // NewCase prepares a lot.
@@ -42,7 +42,7 @@ func NewCase(j *job.Job, lot job.Lot, c *catalog.Catalog) (*Case, error) {
 		Job: j, Lot: lot, Catalog: c, Solvent: solvent, Mixture: m,
 		Feed:  feed(m, lot, j.Site.RoomK),
 		Limit: assay.Accept(lot.Target, method), Assay: method, Trap: trap, NoTrap: noTrap,
-		traps: map[trapKey]steps.Outcome{},
+		known: map[stepKey]result{},
 	}, nil
 }
 

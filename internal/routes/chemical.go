@@ -2,6 +2,7 @@ package routes
 
 import (
 	"fmt"
+	"math"
 
 	"parch/catalog"
 	"parch/internal/steps"
@@ -11,16 +12,11 @@ import (
 // the goal.
 func (c *Case) runSalt(lot steps.Lot, goal float64, agent string, last bool) (steps.Outcome, error) {
 	a := c.Catalog.Agents[agent]
-	rules := steps.SaltRules{
-		LowestOutlet: a.Claim.Least.SI, LowestTarget: a.Claim.Target.SI,
-		ClaimTimeS: c.practice("salt-contact"), ClaimDoseKgPerM3: a.Claim.Dose.SI,
-	}
-	_, portions := c.vessel()
-	rig := steps.SaltRig{TempK: c.Job.Site.RoomK, TimeS: c.practice("salt-contact"), AttendedS: c.practice("salt-attended"), Portions: portions}
+	rules, rig := c.saltRules(a), c.saltRig(math.NaN())
 	if last {
 		return steps.SaltFor(c.Mixture, lot, goal, c.salt(a), rules, rig)
 	}
-	return steps.RunSalt(c.Mixture, lot, a.Claim.Dose.SI, c.salt(a), rules, rig)
+	return steps.RunSalt(c.Mixture, lot, rules.ClaimDoseKgPerM3, c.salt(a), rules, rig)
 }
 
 func (c *Case) salt(a *catalog.Agent) steps.SaltAgent {
@@ -52,20 +48,12 @@ func (c *Case) refuseSalt(agent string, last bool) (reason, source string) {
 	return "", ""
 }
 
-// runReactive boils the lot over an agent and distils it off.
+// runReactive boils the lot over an agent and distils it off. The spent agent is
+// seen to by people trained for it, which takes its own time.
 func (c *Case) runReactive(lot steps.Lot, agent string) (steps.Outcome, error) {
-	a := c.Catalog.Agents[agent]
-	re := a.Reaction
-	still, charges := c.Still()
-	return steps.RunReactive(c.Mixture, lot, steps.ReactiveAgent{
-		Key: agent, MolarMassKgPerMol: a.MolarMassKgPerMol(), WaterMolPerMol: re.Water, HydrogenMolPerMol: re.Hydrogen, SolventMolPerMol: re.Solvent,
-		ClassActivity: re.Activity.SI, ClassBand: re.Activity.High / re.Activity.SI, HandlesBelow: re.Feed.SI, LeastRefluxS: c.practice("reactive-reflux"),
-	}, c.measured(a), steps.ReactiveRig{
-		PressurePa: c.Job.Site.PressurePa, RoomK: c.Job.Site.RoomK, HeaterW: c.heaterW(still), HeatShare: c.practice("heat-share"),
-		RefluxS: c.practice("reactive-reflux"), Surplus: re.Surplus.SI, LeastKgPerM3: c.practice("reactive-least"),
-		HeelShare: c.practice("forerun-heel"), Charges: charges, SetUpS: c.practice("reactive-attended"),
-		AttendedShare: c.practice("trap-attended-share"), CoolingFlowM3S: c.practice("cooling-flow"), VapourLossPerDay: c.practice("vapour-loss-per-day"),
-	})
+	o, err := steps.RunReactive(c.Mixture, lot, c.reactiveAgent(agent), c.measured(c.Catalog.Agents[agent]), c.reactiveRig(agent))
+	o.HoursTotal += c.practice("reactive-spent") / 3600
+	return o, err
 }
 
 // measured is what the agent was found to leave in this solvent, if anything.

@@ -26,7 +26,10 @@ func (c *Case) Run(r Route, s Settings) (Run, error) {
 			goal = s.HandOverMgPerKg[i] * 1e-6
 		}
 		choice := s.at(r, i)
-		o, err := c.step(stage, lot, goal, i == len(r)-1, choice)
+		o, err := c.remembered(stage, lot, goal, i == len(r)-1, choice)
+		if err == nil {
+			err = nothingKept(o)
+		}
 		if err != nil {
 			return Run{}, fmt.Errorf("%s: %w", stage.Kind, refused(err))
 		}
@@ -53,7 +56,9 @@ func (c *Case) step(stage Stage, lot steps.Lot, goal float64, last bool, choice 
 	case steps.Settle:
 		return steps.RunSettle(c.Mixture, lot, c.Job.Site.RoomK, c.settleRules())
 	case steps.Trap:
-		return c.runTrap(lot, goal)
+		return c.boilOut(lot, goal, choice.goesOn)
+	case steps.Forerun:
+		return c.runForerun(lot, goal, choice)
 	case steps.Salt:
 		return c.runSalt(lot, goal, stage.Agent, last)
 	case steps.Soak:
@@ -78,7 +83,7 @@ func (r refusal) Unwrap() error { return r.error }
 // refused marks the errors that say that a step does not work on this lot.
 func refused(err error) error {
 	for _, known := range []error{steps.ErrNoTrap, steps.ErrNothingSettles, steps.ErrWetSieve, steps.ErrUnfit, steps.ErrNoSense,
-		steps.ErrNoColumn, steps.ErrSaltTooWarm, steps.ErrPreDry, steps.ErrHeater} {
+		steps.ErrNoForerun, steps.ErrNoColumn, steps.ErrSaltTooWarm, steps.ErrPreDry, steps.ErrHeater} {
 		if errors.Is(err, known) {
 			return refusal{err}
 		}
@@ -90,7 +95,7 @@ func refused(err error) error {
 // reached one of a step that has none.
 func (c *Case) keptHandOver(r Route, s Settings, reached []float64) []float64 {
 	for i := range reached {
-		if r[i].Kind == steps.Trap {
+		if r[i].Kind == steps.Trap || r[i].Kind == steps.Forerun {
 			reached[i] = s.HandOverMgPerKg[i]
 		}
 	}
@@ -149,24 +154,37 @@ func (c *Case) trapRules() steps.TrapRules {
 	}
 }
 
-// trapKey tells trap runs of one case apart: what goes in and what is asked.
-type trapKey struct{ waterKg, solventKg, goal float64 }
+// stepKey tells the steps of one case apart: what goes in and what is asked.
+type stepKey struct {
+	stage                           Stage
+	waterKg, solventKg, tempK, goal float64
+	last                            bool
+	choice                          choice
+}
 
-// runTrap remembers its outcomes: a search asks for the same trap before many
-// different soaks.
-func (c *Case) runTrap(lot steps.Lot, goal float64) (steps.Outcome, error) {
-	key := trapKey{lot.WaterKg, lot.SolventKg, goal}
-	if o, ok := c.traps[key]; ok {
-		return o, nil
+// remembered carries out a stage, or gives the outcome it had before: a search
+// asks for the same trap, salt or forerun before many different soaks. Soaks
+// themselves are quick and many.
+func (c *Case) remembered(stage Stage, lot steps.Lot, goal float64, last bool, choice choice) (steps.Outcome, error) {
+	if stage.Kind == steps.Soak {
+		return c.step(stage, lot, goal, last, choice)
 	}
-	o, err := c.boilOut(lot, goal)
-	if err == nil {
-		c.traps[key] = o
+	key := stepKey{stage, lot.WaterKg, lot.SolventKg, lot.TempK, goal, last, choice}
+	if known, ok := c.known[key]; ok {
+		return known.outcome, known.err
 	}
+	o, err := c.step(stage, lot, goal, last, choice)
+	c.known[key] = result{o, err}
 	return o, err
 }
 
-func (c *Case) boilOut(lot steps.Lot, goal float64) (steps.Outcome, error) {
+type result struct {
+	outcome steps.Outcome
+	err     error
+}
+
+// boilOut runs the trap; a pot that goes on to a forerun is not cooled down.
+func (c *Case) boilOut(lot steps.Lot, goal float64, goesOn bool) (steps.Outcome, error) {
 	if c.Trap == nil {
 		return steps.Outcome{}, c.NoTrap
 	}
@@ -179,11 +197,18 @@ func (c *Case) boilOut(lot steps.Lot, goal float64) (steps.Outcome, error) {
 	if receiver.SetUp != nil {
 		rules.SetUpS += receiver.SetUp.SI
 	}
-	return steps.RunTrap(c.Trap, lot, goal, steps.TrapRig{
+	if goesOn {
+		rules.ShutDownS = 0
+	}
+	o, err := steps.RunTrap(c.Trap, lot, goal, steps.TrapRig{
 		HeaterW: c.heaterW(still), HeatShare: c.practice("heat-share"), Returns: receiver.Returns,
 		FillVolumeM3: receiver.FillVolume.SI, UsableVolumeM3: receiver.Volume.SI,
 		RoomK: c.Job.Site.RoomK, Charges: charges,
 	}, rules)
+	if err == nil && goesOn {
+		o.Out.TempK = o.Course[len(o.Course)-1].PotK
+	}
+	return o, err
 }
 
 // dryGrade is the water a dry grade is sold with, the job's own before the catalog's.

@@ -25,8 +25,8 @@ type Asked struct {
 // Single is what one stage does by itself.
 type Single struct {
 	steps.Outcome
-	OwnHours  float64 // attended at the step itself
-	Uses      []StageUse
+	OwnHours  float64          // attended at the step itself
+	Elsewhere []StageUse       // work and energy that are no part of its own
 	Low, High float64          // kg/kg, the outlet at the ends of the bands that are known; NaN where none is
 	Bands     []string         // what was taken to both ends
 	Sizes     []steps.SoakSize // of a soak to a goal for which neither dose nor time was given
@@ -55,7 +55,7 @@ func (c *Case) Single(a Asked) (Single, error) {
 		s.Outcome, err = steps.RunSettle(c.Mixture, c.Feed, c.Job.Site.RoomK, c.settleRules())
 		c.bandOfSolubility(&s, func(factor float64) float64 { return s.Out.Water() * factor })
 	case steps.Trap:
-		s.Outcome, err = c.boilOut(c.Feed, orZero(a.Goal))
+		s.Outcome, err = c.boilOut(c.Feed, orZero(a.Goal), false)
 		c.bandOfSolubility(&s, func(factor float64) float64 { return c.trapOutlet(orZero(a.Goal), factor) })
 	case steps.Soak:
 		err = c.singleSoak(a, &s)
@@ -74,10 +74,25 @@ func (c *Case) Single(a Asked) (Single, error) {
 	if err != nil {
 		return Single{}, refused(err)
 	}
+	uses := c.account(1, s.Outcome, choice{stirred: a.Stirred, after: Discard})
 	s.OwnHours = s.HoursAttended
-	s.Uses = c.account(1, s.Outcome, choice{stirred: a.Stirred, after: Discard})
-	s.HoursAttended, s.EnergyKWh = sum(s.Uses, "technician"), sum(s.Uses, "electricity")
+	s.Elsewhere = append(beside(uses, "technician", s.HoursAttended), beside(uses, "electricity", s.EnergyKWh)...)
+	s.HoursAttended, s.EnergyKWh = sum(uses, "technician"), sum(uses, "electricity")
 	return s, nil
+}
+
+// beside are the uses of an item but the step's own, which comes first.
+func beside(uses []StageUse, item string, own float64) (others []StageUse) {
+	for _, u := range uses {
+		switch {
+		case u.Item != item:
+		case own > 0:
+			own = 0
+		default:
+			others = append(others, u)
+		}
+	}
+	return others
 }
 
 // nothingKept refuses a step of which no solvent comes out.

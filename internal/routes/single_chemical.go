@@ -2,7 +2,6 @@ package routes
 
 import (
 	"fmt"
-	"math"
 
 	"parch/catalog"
 	"parch/internal/steps"
@@ -86,7 +85,8 @@ func (c *Case) singleReactive(a Asked, s *Single) (err error) {
 	if given(a.DoseKgPerM3) {
 		rig.Surplus, rig.LeastKgPerM3 = 1, a.DoseKgPerM3
 	}
-	if s.Outcome, err = steps.RunReactive(c.Mixture, c.Feed, agent, c.measured(c.Catalog.Agents[a.Agent]), rig); err != nil {
+	found := c.measured(c.Catalog.Agents[a.Agent])
+	if s.Outcome, err = steps.RunReactive(c.Mixture, c.Feed, agent, found, rig); err != nil {
 		return err
 	}
 	volumeM3 := steps.LotVolume(c.Mixture, c.Feed, c.Job.Site.RoomK)
@@ -94,11 +94,11 @@ func (c *Case) singleReactive(a Asked, s *Single) (err error) {
 		return fmt.Errorf("%w: %.3g g/L of %s are under the %.3g g/L that the water takes", steps.ErrNoSense, a.DoseKgPerM3, a.Agent, need)
 	}
 	s.Low, s.High = s.Figure("residual, low")*1e-6, s.Figure("residual, high")*1e-6
-	if math.Abs(s.High-s.Low) < 1e-12 {
-		s.Low, s.High = math.NaN(), math.NaN()
-		return nil
+	if found.Water > 0 {
+		s.Bands = append(s.Bands, "what was measured for the pair")
+	} else {
+		s.Bands = append(s.Bands, fmt.Sprintf("what agents of the class leave, a factor of %.3g either way", agent.ClassBand))
 	}
-	s.Bands = append(s.Bands, "what was found for the pair, or else for the class of agent")
 	return nil
 }
 

@@ -49,6 +49,9 @@ const longestSoakHours = 366 * 24
 
 // choice is what the settings say of one stage.
 type choice struct {
+	stages    int
+	hot       bool // the pot comes hot from the step before
+	goesOn    bool // the next step takes the pot hot
 	soakHours float64
 	stirred   bool
 	after     string // what is done with the sieve
@@ -56,6 +59,11 @@ type choice struct {
 
 // at returns the choices of stage i.
 func (s Settings) at(r Route, i int) (c choice) {
+	if r[i].Kind == steps.Forerun {
+		c.stages = s.Stages[r[:i].count(steps.Forerun)]
+		c.hot = i > 0 && r[i-1].Kind == steps.Trap
+	}
+	c.goesOn = r[i].Kind == steps.Trap && i+1 < len(r) && r[i+1].Kind == steps.Forerun
 	if k := r[:i].count(steps.Soak); r[i].Kind == steps.Soak {
 		c.soakHours = s.SoakHours[k]
 		c.stirred = k < len(s.Stirred) && s.Stirred[k] // not given: still
@@ -70,6 +78,7 @@ func (s Settings) at(r Route, i int) (c choice) {
 type Settings struct {
 	HandOverMgPerKg []float64 `json:"hand_over_mg_per_kg"`  // water after each stage but the last
 	SoakHours       []float64 `json:"soak_hours,omitempty"` // one for each soak
+	Stages          []int     `json:"stages,omitempty"`     // of the column of each forerun; 0: a simple still
 	Stirred         []bool    `json:"stirred,omitempty"`    // one for each soak
 	Sieve           []string  `json:"sieve,omitempty"`      // "regenerate" or "discard", one for each soak or column
 }
@@ -83,6 +92,9 @@ var ErrSettings = errors.New("settings do not fit")
 // Fit reports settings that do not belong to the route.
 func (s Settings) Fit(r Route) error {
 	soaks, beds := r.count(steps.Soak), r.count(steps.Soak, steps.Column)
+	if foreruns := r.count(steps.Forerun); len(s.Stages) != foreruns {
+		return fmt.Errorf("%s: %w: %d column stages for %d foreruns", r.ID(), ErrSettings, len(s.Stages), foreruns)
+	}
 	if len(s.HandOverMgPerKg) != len(r)-1 || len(s.SoakHours) != soaks || len(s.Stirred) > soaks || len(s.Sieve) != beds {
 		return fmt.Errorf("%s: %w: %d hand-overs, %d soak hours, %d stirred, %d sieve choices", r.ID(), ErrSettings,
 			len(s.HandOverMgPerKg), len(s.SoakHours), len(s.Stirred), len(s.Sieve))

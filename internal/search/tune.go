@@ -75,11 +75,12 @@ func (t *Tuner) Tune(r routes.Route) (routes.Run, error) {
 	return best.run, err
 }
 
-// handOverPlace is the stage whose outlet is free to choose: a trap that is
-// followed by another step. -1 if there is none.
+// handOverPlace is the last stage whose outlet is free to choose: a trap or a
+// forerun that is followed by another step. -1 if there is none. A trap before a
+// forerun is run as far as it goes: what it takes is not lost with the forerun.
 func handOverPlace(r routes.Route) int {
-	for i, s := range r[:len(r)-1] {
-		if s.Kind == steps.Trap {
+	for i := len(r) - 2; i >= 0; i-- {
+		if r[i].Kind == steps.Trap && r[i+1].Kind != steps.Forerun || r[i].Kind == steps.Forerun {
 			return i
 		}
 	}
@@ -92,7 +93,7 @@ const worthASieve = 1.25
 // handOverRange is from what the trap can do at best to what it is given.
 func (t *Tuner) handOverRange(r routes.Route, place int) (lo, hi float64, err error) {
 	head := r[:place+1]
-	run, err := t.Case.Run(head, settings(head, -1, 0, stand{}, ""))
+	run, err := t.driest(head)
 	if err != nil {
 		return 0, 0, err
 	}
@@ -107,10 +108,23 @@ func (t *Tuner) handOverRange(r routes.Route, place int) (lo, hi float64, err er
 	return lo, hi, nil
 }
 
+// driest runs a route whose last step is a trap or a forerun as far as it goes,
+// with the tallest column that does not waste the lot.
+func (t *Tuner) driest(head routes.Route) (run routes.Run, err error) {
+	stages := t.Case.ColumnStages()
+	for i := len(stages) - 1; i >= 0; i-- {
+		if run, err = t.Case.Run(head, settings(head, -1, 0, stand{stages: stages[i]}, "")); err == nil || !has(head, steps.Forerun) {
+			return run, err
+		}
+	}
+	return run, err
+}
+
 // stand is how a soak is carried out.
 type stand struct {
 	hours   float64
 	stirred bool
+	stages  int // of the column, where the route draws a forerun
 }
 
 func settings(r routes.Route, place int, handOver float64, soak stand, after string) routes.Settings {
@@ -125,6 +139,8 @@ func settings(r routes.Route, place int, handOver float64, soak stand, after str
 			s.Sieve = append(s.Sieve, after)
 		case steps.Column:
 			s.Sieve = append(s.Sieve, after)
+		case steps.Forerun:
+			s.Stages = append(s.Stages, soak.stages)
 		}
 	}
 	return s
@@ -199,9 +215,6 @@ func refine(f func(u float64) float64, lo, hi float64) {
 // bestSoak tries the stands, or those near one of them, and what is done with
 // the sieve afterwards.
 func (t *Tuner) bestSoak(r routes.Route, near *stand, with func(soak stand, after string) routes.Settings) (trial, error) {
-	if !has(r, steps.Soak) && !has(r, steps.Column) {
-		return t.one(r, with(stand{}, ""))
-	}
 	stands := []stand{{}}
 	if has(r, steps.Soak) {
 		var err error
@@ -209,14 +222,19 @@ func (t *Tuner) bestSoak(r routes.Route, near *stand, with func(soak stand, afte
 			return trial{}, err
 		}
 	}
+	if has(r, steps.Forerun) {
+		stands = overColumns(stands, t.Case.ColumnStages())
+	}
 	best := trial{score: math.Inf(1)}
+	var last error
 	for i, soak := range stands {
 		if near != nil && !neighbours(stands, i, *near) {
 			continue
 		}
-		for _, after := range t.afterUse() {
+		for _, after := range t.afterUse(r) {
 			found, err := t.one(r, with(soak, after))
-			if errors.Is(err, ErrTooSlow) {
+			if errors.Is(err, ErrTooSlow) || errors.Is(err, routes.ErrRefused) {
+				last = err
 				continue
 			}
 			if err != nil {
@@ -229,9 +247,21 @@ func (t *Tuner) bestSoak(r routes.Route, near *stand, with func(soak stand, afte
 		}
 	}
 	if math.IsInf(best.score, 1) {
-		return best, fmt.Errorf("%w: needed within %.3g h", ErrTooSlow, t.Case.Lot.NeededWithinS/3600)
+		return best, last
 	}
 	return best, nil
+}
+
+// overColumns crosses stands with the columns a forerun may be drawn over.
+func overColumns(stands []stand, stages []int) []stand {
+	var all []stand
+	for _, n := range stages {
+		for _, s := range stands {
+			s.stages = n
+			all = append(all, s)
+		}
+	}
+	return all
 }
 
 // neighbours reports whether stand i is near or next to it.
@@ -246,7 +276,10 @@ func neighbours(stands []stand, i int, near stand) bool {
 
 // afterUse is what may be done with a sieve. One that is activated in the oven
 // before each use is not thrown away after it: using it again costs nothing more.
-func (t *Tuner) afterUse() []string {
+func (t *Tuner) afterUse(r routes.Route) []string {
+	if !has(r, steps.Soak) && !has(r, steps.Column) {
+		return []string{""}
+	}
 	if t.Case.Lot.SieveHistoryK > 0 {
 		return []string{routes.Regenerate}
 	}
@@ -271,7 +304,7 @@ func (t *Tuner) standsOnOffer(r routes.Route, with func(stand, string) routes.Se
 	longest := math.Inf(1)
 	if limit := t.Case.Lot.NeededWithinS / 3600; limit > 0 {
 		const probe = 1.0
-		run, err := t.Case.Run(r, with(stand{hours: probe}, routes.Discard))
+		run, err := t.Case.Run(r, with(stand{hours: probe, stages: t.Case.ColumnStages()[len(t.Case.ColumnStages())-1]}, routes.Discard))
 		if err != nil {
 			return nil, err
 		}
@@ -286,11 +319,11 @@ func (t *Tuner) standsOnOffer(r routes.Route, with func(stand, string) routes.Se
 	}{{false, soakHours}, {true, stirredHours}} {
 		for _, h := range kind.hours {
 			if h < longest {
-				stands = append(stands, stand{h, kind.stirred})
+				stands = append(stands, stand{hours: h, stirred: kind.stirred})
 			}
 		}
 		if longest <= kind.hours[len(kind.hours)-1] {
-			stands = append(stands, stand{longest, kind.stirred})
+			stands = append(stands, stand{hours: longest, stirred: kind.stirred})
 		}
 	}
 	return stands, nil

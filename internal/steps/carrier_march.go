@@ -36,8 +36,11 @@ func (r *refluxing) march(rate flow, progress func(*state, *condensed) float64, 
 			return err
 		}
 		if !(off <= 1) && step > tiny {
-			step *= math.Max(0.2, 0.9*math.Pow(off, -0.2))
+			step *= math.Max(0.2, 0.9/math.Pow(off, 0.2))
 			continue
+		}
+		if !(off < math.Inf(1)) {
+			break // even the shortest step came to nothing
 		}
 		after := progress(&next, &lastC)
 		if after > 1+progressAccuracy && step > tiny {
@@ -53,7 +56,7 @@ func (r *refluxing) march(rate flow, progress func(*state, *condensed) float64, 
 		step = math.Min(step*math.Min(5, 0.9*math.Pow(math.Max(off, 1e-9), -0.2)), carrierLongestStep*total(r.s.pot))
 	}
 	return fmt.Errorf("%s and %s: the distillation did not end in %d steps, at %.3g mg/kg of water in the pot",
-		r.m.Pure[inSolvent].Key, r.m.Pure[inCarrier].Key, carrierMostSteps, r.dryness(&r.s)*mgPerKg)
+		r.m.Pure[inSolvent].Key, r.m.Pure[inCarrier].Key, len(r.course), r.dryness(&r.s)*mgPerKg)
 }
 
 // The pair of fifth and fourth order: nodes fall away, since the flow depends on
@@ -110,6 +113,9 @@ func (r *refluxing) stepError(h float64, s *state, difference Fractions) (off fl
 	for i := range s.pot {
 		e := h * math.Abs(difference[i])
 		off = math.Max(off, e*s.pot[i]/(allowed*(s.pot[i]+1e-7*total(s.pot))))
+	}
+	if math.IsNaN(off) {
+		return math.Inf(1)
 	}
 	return off
 }

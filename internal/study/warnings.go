@@ -50,7 +50,11 @@ func lotWarnings(k *routes.Case) []string {
 func runWarnings(k *routes.Case, run routes.Run) []string {
 	var w []string
 	add := func(format string, args ...any) { w = append(w, fmt.Sprintf(format, args...)) }
-	w = append(w, ownWarnings(k, run)...)
+	var pieces []string
+	for _, o := range run.Outcomes {
+		pieces = append(pieces, o.Agent, o.Apparatus)
+	}
+	w = append(w, ownWarnings(k, pieces)...)
 	for _, o := range run.Outcomes {
 		w = append(w, o.Warnings...)
 		switch o.Kind {
@@ -85,8 +89,9 @@ func runWarnings(k *routes.Case, run routes.Run) []string {
 	return w
 }
 
-// ownWarnings say which entries of the user's own a route rests on.
-func ownWarnings(k *routes.Case, run routes.Run) (w []string) {
+// ownWarnings say which entries of the user's own a route with these agents and
+// pieces of apparatus rests on.
+func ownWarnings(k *routes.Case, pieces []string) (w []string) {
 	if s := k.Solvent; s.Own {
 		text := s.Name + " is from own data"
 		if n := len(s.Estimates); n > 0 {
@@ -94,11 +99,11 @@ func ownWarnings(k *routes.Case, run routes.Run) (w []string) {
 		}
 		w = append(w, text)
 	}
-	for _, o := range run.Outcomes {
-		if a := k.Catalog.Agents[o.Agent]; a != nil && a.Own {
+	for _, key := range pieces {
+		if a := k.Catalog.Agents[key]; a != nil && a.Own {
 			w = append(w, a.Name+" is from own data")
 		}
-		if a := k.Catalog.Apparatus[o.Apparatus]; a != nil && a.Own {
+		if a := k.Catalog.Apparatus[key]; a != nil && a.Own {
 			w = append(w, a.Name+" is from own data")
 		}
 	}

@@ -17,6 +17,9 @@ type unstableTrials struct {
 func (l *liquid) unstable(z *Fractions) (t unstableTrials) {
 	plane := l.plane(z)
 	for start := range trialStarts {
+		if watery(start) && plane[InWater] < lnDryActivity {
+			continue
+		}
 		if y, distance, ok := l.descend(z, &plane, trialFrom(z, start)); ok {
 			t.add(y, distance)
 		}
@@ -28,6 +31,9 @@ func (l *liquid) unstable(z *Fractions) (t unstableTrials) {
 func (l *liquid) isUnstable(z *Fractions) bool {
 	plane := l.plane(z)
 	for start := range trialStarts {
+		if watery(start) && plane[InWater] < lnDryActivity {
+			continue
+		}
 		if _, _, ok := l.descend(z, &plane, trialFrom(z, start)); ok {
 			return true
 		}
@@ -45,6 +51,12 @@ func (l *liquid) plane(z *Fractions) Fractions {
 
 // trialStarts is the number of starts; those below three are the components.
 const trialStarts = 4
+
+// lnDryActivity is the logarithm of the activity of water below which no second
+// layer can be a watery one, so that the watery starts are left out.
+const lnDryActivity = -3
+
+func watery(start int) bool { return start == InWater || start >= MaxComponents }
 
 // trialFrom is a start: nearly pure in one component with some of the feed, or
 // half feed and half water.

@@ -1,0 +1,69 @@
+package routes
+
+import (
+	"fmt"
+
+	"parch/catalog"
+	"parch/internal/steps"
+)
+
+// wastefulForerun is the share of a lot beyond which drawing off is no way to dry
+// it (common practice, no source).
+const wastefulForerun = 0.5
+
+// runForerun draws the water off without return, over the column of the settings.
+func (c *Case) runForerun(lot steps.Lot, goal float64, choice choice) (steps.Outcome, error) {
+	eq, err := steps.NewForerunEquilibrium(c.Mixture, c.Job.Site.PressurePa)
+	if err != nil {
+		return steps.Outcome{}, err
+	}
+	still, charges := c.Still()
+	rig := steps.ForerunRig{
+		HeaterW: c.heaterW(still), HeatShare: c.practice("heat-share"), RoomK: c.Job.Site.RoomK, Charges: charges, Stages: choice.stages,
+	}
+	rules := steps.ForerunRules{
+		HeelShare: c.practice("forerun-heel"), LowestOutlet: c.practice("trap-outlet-minimum"),
+		SetUpS: c.practice("forerun-attended"), AttendedShare: c.practice("trap-attended-share"), ShutDownS: c.practice("trap-shutdown"),
+		VapourLossPerDay: c.practice("vapour-loss-per-day"), CoolingFlowM3S: c.practice("cooling-flow"), CoolingRiseK: c.practice("cooling-rise"),
+	}
+	if choice.stages > 0 {
+		rig.RefluxRatio, rules.SettleColumnS = c.practice("forerun-reflux"), c.practice("forerun-column")
+	}
+	if choice.hot {
+		rules.SetUpS = c.practice("draining-time") // the trap is turned off and runs out
+	}
+	o, err := steps.RunForerun(eq, lot, goal, rig, rules)
+	if err != nil {
+		return o, err
+	}
+	if column := c.columnOf(choice.stages); column != nil {
+		o.Apparatus = column.Key
+	}
+	lostKg := 0.0
+	for _, l := range o.Losses {
+		lostKg += l.SolventKg
+	}
+	if lost := lostKg / lot.SolventKg; lost > wastefulForerun {
+		return o, refusal{fmt.Errorf("a forerun over %d stages would take %.0f %% of the lot with it", choice.stages, 100*lost)}
+	}
+	return o, nil
+}
+
+// ColumnStages are the columns that a forerun may be drawn over: a simple still,
+// and the packed ones of the catalog.
+func (c *Case) ColumnStages() []int {
+	stages := []int{0}
+	for _, a := range c.pieces("fractionating column") {
+		stages = append(stages, int(a.Stages.SI))
+	}
+	return stages
+}
+
+func (c *Case) columnOf(stages int) *catalog.Apparatus {
+	for _, a := range c.pieces("fractionating column") {
+		if stages > 0 && int(a.Stages.SI) == stages {
+			return a
+		}
+	}
+	return nil
+}
