@@ -185,7 +185,7 @@ func TestSettingsRefused(t *testing.T) {
 		{"another document", `{}`, `f.json: no lots in it; expected the JSON that compare writes`},
 		{"wrong kind", `{"lots": 3}`, `f.json:1: lots cannot be a number; expected the JSON that compare writes`},
 		{"missing", `{"lots": [{"name": "a", "routes": [{"id": "trap"}]}]}`, `f.json: lot "a", route "trap": settings: missing`},
-		{"unknown key", wrap(`{"stages": 3}`), `f.json: lot "a", route "trap": settings: unknown field "stages"`},
+		{"unknown key", wrap(`{"plates": 3}`), `f.json: lot "a", route "trap": settings: unknown field "plates"`},
 		{"negative", wrap(`{"hand_over_mg_per_kg": [-1]}`), `f.json: lot "a", route "trap": settings: hand_over_mg_per_kg is negative: [-1]`},
 		{"word", wrap(`{"sieve": ["burn"]}`), `f.json: lot "a", route "trap": settings: sieve is "burn"; allowed: "regenerate", "discard"`},
 		{"twice", `{"lots": [{"name": "a"}, {"name": "a"}]}`, `f.json: lot "a" stands in it twice`},
