@@ -94,7 +94,7 @@ func (q *request) complete(c *cli.Context) (err error) {
 	if q.job == "-" && q.settings == "-" {
 		return misused("the job and --settings-from cannot both come from standard input", "")
 	}
-	if q.json != "" && filepath.Clean(q.json) == filepath.Clean(q.workbook) {
+	if q.json != "" && sameFile(q.json, q.workbook) {
 		return misused(fmt.Sprintf("--json and --workbook name the same file: %s", q.json), "")
 	}
 	return nil

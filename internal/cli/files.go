@@ -35,7 +35,7 @@ func (p *program) read(path string) (name string, data []byte, err error) {
 
 // free refuses a path that cannot be written to, before any work is done.
 func free(path string, force bool, hint string) error {
-	info, err := os.Stat(path)
+	info, err := os.Lstat(path)
 	switch {
 	case errors.Is(err, fs.ErrNotExist):
 		dir := filepath.Dir(path)
@@ -45,6 +45,8 @@ func free(path string, force bool, hint string) error {
 		return nil
 	case err != nil:
 		return misused(fmt.Sprintf("cannot write %s: %s", path, cause(err)), "")
+	case info.Mode()&fs.ModeSymlink != 0:
+		return misused(fmt.Sprintf("cannot write %s: it is a link; name the file itself", path), "")
 	case !info.Mode().IsRegular():
 		return misused(fmt.Sprintf("cannot write %s: it is not a file", path), "")
 	case !force:
@@ -55,7 +57,7 @@ func free(path string, force bool, hint string) error {
 
 // write puts data into a file that appears whole or not at all.
 func write(path string, data []byte) error {
-	part := filepath.Join(filepath.Dir(path), fmt.Sprintf(".%s.%d.part", filepath.Base(path), os.Getpid()))
+	part := filepath.Join(filepath.Dir(path), fmt.Sprintf(".parch-%d-%s.part", os.Getpid(), filepath.Ext(path)))
 	err := fill(part, data)
 	if err == nil {
 		err = atomic.ReplaceFile(part, path)
@@ -73,6 +75,13 @@ func fill(path string, data []byte) error {
 	}
 	_, err = f.Write(data)
 	return errors.Join(err, f.Sync(), f.Close())
+}
+
+// sameFile reports whether two paths name one file, however they are spelled.
+func sameFile(a, b string) bool {
+	one, errA := filepath.Abs(a)
+	other, errB := filepath.Abs(b)
+	return errA == nil && errB == nil && one == other
 }
 
 func removed(path string) error {

@@ -40,6 +40,9 @@ type lotOut struct {
 	Routes         []routeOut    `json:"routes"`
 	Excluded       []excludedOut `json:"excluded"`
 	BreakEven      struct{}      `json:"break_even"`
+	NothingToDo    string        `json:"nothing_to_do,omitempty"`
+	CannotShow     string        `json:"cannot_show,omitempty"`
+	Warnings       []string      `json:"warnings,omitempty"`
 }
 
 type routeOut struct {
@@ -168,6 +171,9 @@ func showLot(l *study.Lot) lotOut {
 		AcceptAt:       number(l.AcceptAt * mgPerKg),
 		Routes:         make([]routeOut, len(l.Routes)),
 		Excluded:       make([]excludedOut, len(l.Excluded)),
+		NothingToDo:    l.NothingToDo,
+		CannotShow:     l.CannotShow,
+		Warnings:       l.Warnings,
 	}
 	for i := range l.Routes {
 		out.Routes[i] = showRoute(&l.Routes[i])

@@ -62,7 +62,8 @@ func TestJSON(t *testing.T) {
 	golden(t, "report.golden.json", out.Bytes())
 }
 
-// The keys of the outside contract, in order and complete.
+// The keys of the outside contract, in order and complete. A lot that has them
+// carries "nothing_to_do", "cannot_show" and "warnings" besides.
 const (
 	documentKeys = "parch catalog_date seed draws currency lots purchases"
 	lotKeys      = "name solvent batch_l batches_per_year water_in_mg_per_kg target_mg_per_kg accept_at_or_below_mg_per_kg routes excluded break_even"
