@@ -34,6 +34,7 @@ func (p *program) compare() *cli.Command {
 			&cli.StringFlag{Name: "csv", Usage: "write buying.csv, bills.csv and routes.csv into the folder `DIR`"},
 			&cli.StringFlag{Name: "settings-from", Usage: "take the settings from the JSON `F` of an earlier run"},
 			onOff("force", "write over files that are there already"),
+			onOff("all", "print every route, not only the first of a lot"),
 			onOff("quiet", "print errors only"),
 		},
 		Action: p.runCompare,
@@ -43,13 +44,13 @@ func (p *program) compare() *cli.Command {
 // request is what a compare command asks for.
 type request struct {
 	job, workbook, json, csv, settings string
-	demo, force, quiet                 bool
+	demo, force, all, quiet            bool
 }
 
 func (p *program) runCompare(c *cli.Context) error {
 	q := request{
 		workbook: c.String("workbook"), json: c.String("json"), csv: c.String("csv"), settings: c.String("settings-from"),
-		demo: c.Bool("demo"), force: c.Bool("force"), quiet: c.Bool("quiet"),
+		demo: c.Bool("demo"), force: c.Bool("force"), all: c.Bool("all"), quiet: c.Bool("quiet"),
 	}
 	if err := q.complete(c); err != nil {
 		return err
@@ -166,6 +167,7 @@ func (p *program) deliver(ctx context.Context, q request, r *study.Report) error
 	if err == nil {
 		opts, err = q.writeFiles(ctx, book.Bytes(), doc.Bytes(), tables)
 	}
+	opts.All = q.all
 	return errors.Join(failed(err), failed(p.print(q, r, opts, doc.Bytes())), unreached(r))
 }
 

@@ -17,6 +17,7 @@ const width = 100
 type page struct {
 	w   io.Writer
 	err error
+	all bool // every route, also those that nobody would take
 }
 
 func (p *page) line(s string) {

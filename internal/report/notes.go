@@ -49,16 +49,18 @@ func warningsOf(r *study.Route) []string {
 }
 
 // lotWarnings joins the warnings of a lot and of its routes, each once.
-func lotWarnings(l *study.Lot) []string {
+func (p *page) lotWarnings(l *study.Lot) []string {
 	var texts []string
 	holds := map[string]map[string]bool{} // text, route id
-	for i := range l.Routes {
-		for _, w := range warningsOf(&l.Routes[i]) {
+	reach, _ := p.first(ranked(l), firstRanked)
+	miss, _ := p.first(missed(l), firstMissed)
+	for _, route := range slices.Concat(reach, miss) {
+		for _, w := range warningsOf(route) {
 			if holds[w] == nil {
 				holds[w] = map[string]bool{}
 				texts = append(texts, w)
 			}
-			holds[w][l.Routes[i].ID] = true
+			holds[w][route.ID] = true
 		}
 	}
 	all := slices.DeleteFunc(slices.Clone(l.Warnings), func(w string) bool {

@@ -144,6 +144,7 @@ func (p *page) ranking(r *study.Report, l *study.Lot) {
 		{"Rank", true, 0}, {"Route", false, 0}, {"Water out\nmg/kg", true, 0}, {"Attended\nh", true, 0}, {"In all\nh", true, 0},
 		{"Energy\nkWh", true, 0}, {"Lost\nL", true, 0}, {"A batch\n" + r.Job.Currency, true, 0}, {"A litre\n" + r.Job.Currency, true, 0},
 	}
+	reach, hidden := p.first(reach, firstRanked)
 	rows := make([][]string, len(reach))
 	for i, route := range reach {
 		run := &route.Run
@@ -155,6 +156,7 @@ func (p *page) ranking(r *study.Report, l *study.Lot) {
 	}
 	p.line("")
 	p.table(columns, rows)
+	p.more(hidden)
 	if slices.ContainsFunc(reach, func(r *study.Route) bool { return r.Bill.Priced() && len(r.Bill.Doubts) > 0 }) {
 		p.say(5, 0, "* rests on prices to check, which stand below.")
 	}
@@ -177,6 +179,7 @@ func (p *page) missing(l *study.Lot) {
 	if len(miss) == 0 {
 		return
 	}
+	miss, hidden := p.first(miss, firstMissed)
 	rows := make([][]string, len(miss))
 	for i, route := range miss {
 		rows[i] = []string{brokenAtPlus(route.ID, routeColumns), mgKg(route.Run.WaterOut), stops(route)}
@@ -187,6 +190,30 @@ func (p *page) missing(l *study.Lot) {
 		p.heading("Routes that do not reach it, and how far each got:")
 	}
 	p.table([]column{{"Route", false, 0}, {"Water out\nmg/kg", true, 0}, {"Why it stops there", false, 52}}, rows)
+	p.more(hidden)
+}
+
+// How many routes of a lot are printed unless all are asked for.
+const (
+	firstRanked = 12
+	firstMissed = 8
+)
+
+// first are the routes that are printed, the first n and every single step, and
+// the number of those that are not.
+func (p *page) first(all []*study.Route, n int) (shown []*study.Route, hidden int) {
+	for i, r := range all {
+		if p.all || i < n || len(r.Run.Route) == 1 {
+			shown = append(shown, r)
+		}
+	}
+	return shown, len(all) - len(shown)
+}
+
+func (p *page) more(hidden int) {
+	if hidden > 0 {
+		p.say(5, 0, "and %s more: --all prints them, the workbook holds them.", count(float64(hidden), "route", "routes"))
+	}
 }
 
 func stops(r *study.Route) string {
@@ -208,7 +235,12 @@ func (p *page) excluded(l *study.Lot) {
 	type cause struct{ reason, source string }
 	var causes []cause
 	ids := map[cause][]string{}
+	beaten := 0
 	for _, x := range l.Excluded {
+		if x.Beaten && !p.all {
+			beaten++
+			continue
+		}
 		c := cause{x.Reason, x.Source}
 		if ids[c] == nil {
 			causes = append(causes, c)
@@ -218,6 +250,9 @@ func (p *page) excluded(l *study.Lot) {
 	p.heading("Not offered:")
 	for _, c := range causes {
 		p.say(5, 4, "%s: %s%s", strings.Join(ids[c], ", "), c.reason, cite(c.source))
+	}
+	if beaten > 0 {
+		p.say(5, 0, "and %s that others beat in everything: --all names them.", count(float64(beaten), "chain", "chains"))
 	}
 }
 

@@ -16,12 +16,13 @@ type Options struct {
 	Workbook string // where the workbook was written, "" for none
 	JSON     string // where the JSON was written, "" for none
 	CSV      string // the folder where the tables were written, "" for none
+	All      bool   // print every route, not only the first ones
 }
 
 // Text prints the report for a terminal: for each lot the best route with the
 // reason, the ranking, the routes that miss, those not offered, and cautions.
 func Text(w io.Writer, r *study.Report, opts Options) error {
-	p := &page{w: w}
+	p := &page{w: w, all: opts.All}
 	title := r.Job.Title
 	if title == "" {
 		title = r.Job.File
@@ -76,7 +77,7 @@ func (p *page) lot(n int, r *study.Report, l *study.Lot) {
 	}
 	p.excluded(l)
 	p.cautions(l)
-	p.notes("Warnings", lotWarnings(l))
+	p.notes("Warnings", p.lotWarnings(l))
 }
 
 func solventName(l *study.Lot) string {

@@ -18,32 +18,18 @@ func (c *Case) Candidates() ([]Route, []Excluded) {
 	var excluded []Excluded
 	told := map[string]bool{}
 	for _, r := range c.chains() {
-		if reason, source := c.refuse(r); reason != "" {
-			if id := c.refusedPart(r).ID(); !told[id] {
-				told[id] = true
-				excluded = append(excluded, Excluded{id, reason, source})
-			}
+		stage, reason, source := c.refuse(r)
+		if reason == "" {
+			offered = append(offered, r)
 			continue
 		}
-		offered = append(offered, r)
+		// what is refused by itself is told once, not in every chain that holds it
+		if id := (Route{stage}).ID(); !told[id] {
+			told[id] = true
+			excluded = append(excluded, Excluded{ID: id, Reason: reason, Source: source})
+		}
 	}
 	return offered, excluded
-}
-
-// refusedPart is the shortest head of a refused route that is refused for the
-// same reason, or the refused step alone where it does not depend on its place:
-// what is refused by itself is told once, not in every chain that holds it.
-func (c *Case) refusedPart(r Route) Route {
-	for i, s := range r {
-		alone := Route{s}
-		if i < len(r)-1 && s.Kind == steps.Salt {
-			alone = append(alone, r[i+1]) // as the last step a salt has rules of its own
-		}
-		if reason, _ := c.refuse(alone); reason != "" {
-			return alone
-		}
-	}
-	return r
 }
 
 // chains are the orders in which the steps make sense: free water first, bulk
@@ -97,31 +83,35 @@ func (c *Case) agents(kinds ...string) []string {
 	return keys
 }
 
-// refuse returns the reason why a route is not offered, or "".
-func (c *Case) refuse(r Route) (reason, source string) {
+// refuse returns the stage for which a route is not offered and the reason, or "".
+func (c *Case) refuse(r Route) (stage Stage, reason, source string) {
 	for i, s := range r {
-		if slices.Contains(c.Job.Exclude.Steps, string(s.Kind)) {
-			return fmt.Sprintf("the job excludes the step %q", s.Kind), "job"
+		if reason, source = c.refuseStage(s, i == len(r)-1); reason != "" {
+			return s, reason, source
 		}
-		switch s.Kind {
-		case steps.Trap:
-			reason, source = c.refuseTrap()
-		case steps.Forerun:
-			reason, source = c.refuseHeating()
-		case steps.Settle:
-			reason, source = c.refuseSettle()
-		case steps.Salt:
-			reason, source = c.refuseSalt(s.Agent, i == len(r)-1)
-		case steps.Soak, steps.Column:
-			reason, source = c.refuseAgent(s.Agent)
-		case steps.Reactive:
-			reason, source = c.refuseReactive(s.Agent)
-		case steps.Buy:
-			reason, source = c.refuseBuy()
-		}
-		if reason != "" {
-			return reason, source
-		}
+	}
+	return Stage{}, "", ""
+}
+
+func (c *Case) refuseStage(s Stage, last bool) (reason, source string) {
+	if slices.Contains(c.Job.Exclude.Steps, string(s.Kind)) {
+		return fmt.Sprintf("the job excludes the step %q", s.Kind), "job"
+	}
+	switch s.Kind {
+	case steps.Trap:
+		return c.refuseTrap()
+	case steps.Forerun:
+		return c.refuseHeating()
+	case steps.Settle:
+		return c.refuseSettle()
+	case steps.Salt:
+		return c.refuseSalt(s.Agent, last)
+	case steps.Soak, steps.Column:
+		return c.refuseAgent(s.Agent)
+	case steps.Reactive:
+		return c.refuseReactive(s.Agent)
+	case steps.Buy:
+		return c.refuseBuy()
 	}
 	return "", ""
 }

@@ -41,7 +41,7 @@ func (c *Case) Refused(s Stage) (reason, source string) {
 	if s.Kind == steps.Salt {
 		return c.refuseAgent(s.Agent)
 	}
-	return c.refuse(Route{s})
+	return c.refuseStage(s, true)
 }
 
 // Single carries out one stage on the lot as it stands. Hours of attendance and

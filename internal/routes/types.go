@@ -141,4 +141,5 @@ type StageUse struct {
 // Excluded is a route that is not offered.
 type Excluded struct {
 	ID, Reason, Source string
+	Beaten             bool // it could be run, but others are no worse in anything
 }

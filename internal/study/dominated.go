@@ -20,7 +20,7 @@ func (l *Lot) dropDominated() {
 			kept = append(kept, r)
 			continue
 		}
-		l.Excluded = append(l.Excluded, routes.Excluded{ID: r.ID, Reason: fmt.Sprintf("no better than %s in cost, hours, energy or waste", better.ID)})
+		l.Excluded = append(l.Excluded, routes.Excluded{ID: r.ID, Reason: fmt.Sprintf("no better than %s in cost, hours, energy or waste", better.ID), Beaten: true})
 	}
 	for i := range kept {
 		if kept[i].Rank > 0 {
