@@ -39,6 +39,9 @@ func (p *page) verdict(r *study.Report, l *study.Lot) {
 	p.line("")
 	reach, miss := ranked(l), missed(l)
 	switch {
+	case len(reach) > 0 && r.Job.Objective == "cost" && !reach[0].Bill.Priced():
+		p.say(3, 0, "%s, but none can be ranked by cost: no price for %s. Give those prices in the job; the order below says nothing.",
+			count(float64(len(reach)), "route reaches the limit", "routes reach the limit"), strings.Join(reach[0].Bill.NoPrice, ", "))
 	case len(reach) > 0:
 		best := reach[0]
 		p.say(3, 0, "Best: %s (%s). %s", best.Label, best.ID, reason(r, reach))

@@ -107,7 +107,7 @@ func (c *Case) reactiveAgent(key string) steps.ReactiveAgent {
 	re := a.Reaction
 	return steps.ReactiveAgent{
 		Key: key, MolarMassKgPerMol: a.MolarMassKgPerMol(), WaterMolPerMol: re.Water, HydrogenMolPerMol: re.Hydrogen, SolventMolPerMol: re.Solvent,
-		ClassActivity: re.Activity.SI, ClassBand: re.Activity.High / re.Activity.SI, HandlesBelow: re.Feed.SI, LeastRefluxS: c.practice("reactive-reflux"),
+		ClassActivity: re.Activity.SI, ClassBand: re.Activity.High / re.Activity.SI, HandlesBelow: re.Feed.SI, LowestOutlet: c.practice("trap-outlet-minimum"), LeastRefluxS: c.practice("reactive-reflux"),
 	}
 }
 

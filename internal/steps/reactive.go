@@ -19,6 +19,7 @@ type ReactiveAgent struct {
 	ClassActivity     float64 // of water at 25 °C, as agents of this kind are seen to leave
 	ClassBand         float64 // factor either way
 	HandlesBelow      float64 // kg/kg; a wetter lot has to be pre-dried
+	LowestOutlet      float64 // kg/kg, least that is claimed of an unmeasured pair: moist air reaches the distillate; 0: none
 	LeastRefluxS      float64 // below it the wet end of the band is claimed; 0: not stated
 }
 
@@ -114,6 +115,11 @@ func (a ReactiveAgent) residual(m *thermo.Mixture, feed Lot, found Measured, rig
 		}
 		r.text = fmt.Sprintf("class floor: no measurement for %s in %s; agents of its kind leave a water activity near %.2g, here %s, %s to %s",
 			a.Key, m.Solvent.Key, a.ClassActivity, quantity.FormatWater(r.water), quantity.FormatWater(r.low), quantity.FormatWater(r.high))
+	}
+	if found.Water == 0 && r.water < a.LowestOutlet {
+		r.why = AtPractice
+		r.text += fmt.Sprintf("; droplets and moist air keep a distillate at %s or more", quantity.FormatWater(a.LowestOutlet))
+		r.water, r.high = a.LowestOutlet, math.Max(r.high, a.LowestOutlet)
 	}
 	if rig.RefluxS < a.LeastRefluxS {
 		r.water = r.high

@@ -12,6 +12,9 @@ func (b *saltBath) run(doseKgPerM3, goal float64) Outcome {
 	doseKg := doseKgPerM3 * b.volumeM3
 	ratio := water / (1 - water)
 	takenKg := b.feed.WaterKg - b.feed.SolventKg*ratio
+	if takenKg < 1e-12*b.feed.WaterKg {
+		takenKg = 0 // what is left is rounding
+	}
 	density := b.m.Solvent.DensityKgPerM3.At(b.rig.TempK)
 	heldKg := math.Min((doseKg+takenKg)*b.salt.HoldUpM3PerKg*density, b.feed.SolventKg)
 	rinse := b.rinse(heldKg, density)

@@ -9,7 +9,7 @@ import (
 )
 
 // dropDominated takes out the chains of several steps that another route beats
-// or equals in everything: objective, cost, attended and total hours, energy,
+// or equals in everything: the job's objective, cost, attended hours, energy,
 // waste, and water left where the target is missed. Single steps stay, and so do
 // chains of settling, trap and soak: whether pre-drying pays is what people ask.
 func (l *Lot) dropDominated() {
@@ -20,7 +20,7 @@ func (l *Lot) dropDominated() {
 			kept = append(kept, r)
 			continue
 		}
-		l.Excluded = append(l.Excluded, routes.Excluded{ID: r.ID, Reason: fmt.Sprintf("no better than %s in cost, hours, energy or waste", better.ID), Beaten: true})
+		l.Excluded = append(l.Excluded, routes.Excluded{ID: r.ID, Reason: fmt.Sprintf("no better than %s in cost, attended hours, energy or waste", better.ID), Beaten: true})
 	}
 	for i := range kept {
 		if kept[i].Rank > 0 {
@@ -46,7 +46,7 @@ func (l *Lot) dominator(r Route) *Route {
 }
 
 func (r *Route) dominates(o Route) bool {
-	if r.Run.Meets != o.Run.Meets && !r.Run.Meets || len(r.Bill.NoPrice) > 0 {
+	if r.Run.Meets != o.Run.Meets && !r.Run.Meets || !r.Bill.Priced() && o.Bill.Priced() {
 		return false
 	}
 	mine, others := r.measures(), o.measures()
@@ -60,10 +60,10 @@ func (r *Route) dominates(o Route) bool {
 	return better
 }
 
-func (r *Route) measures() [7]float64 {
+func (r *Route) measures() [6]float64 {
 	water := 0.0
 	if !r.Run.Meets {
 		water = r.Run.WaterOut
 	}
-	return [7]float64{r.Objective, r.Bill.PerLitre.InexactFloat64(), r.Run.HoursAttended, r.Run.HoursTotal, r.Run.EnergyKWh, r.Run.WasteKg, water}
+	return [6]float64{r.Objective, r.Bill.PerLitre.InexactFloat64(), r.Run.HoursAttended, r.Run.EnergyKWh, r.Run.WasteKg, water}
 }

@@ -67,6 +67,9 @@ func runWarnings(k *routes.Case, run routes.Run) []string {
 			if agent.LoadingBand > 1 {
 				add("%s: loading known to a factor of %.2g only", agent.Name, agent.LoadingBand)
 			}
+			if agent.Kind == "oxide" {
+				add("%s: its history is taken to leave what it leaves on a molecular sieve, an assumption; such a gel is activated cooler", agent.Name)
+			}
 			add("the sieve is taken to hold %.2g g/100 g from its history; this and the mixing rate of a still vessel rule the result (fitted to few published dryings, most within a factor of 2)", k.Lot.ResidualLoading*100)
 			if k.Lot.FreeWaterM3 > 0 && len(run.Outcomes) == 1 {
 				add("free water goes over the sieve: the soak is computed as if it were dissolved, and the sieve warms; draw it off first")
@@ -76,8 +79,11 @@ func runWarnings(k *routes.Case, run routes.Run) []string {
 		case steps.Salt:
 			add("a salt is claimed to take the share of water that it took from ether when it was measured, whatever its equilibrium says")
 		case steps.Reactive:
-			if o.Why == steps.AtFloor {
-				add("nothing measured for %s in %s: the residual is that of agents of its kind, uncertain by a factor of ten", o.Agent, k.Solvent.Name)
+			if o.Why == steps.AtFloor || o.Why == steps.AtPractice {
+				add("nothing measured for %s in %s: agents of its kind leave %s to %s", o.Agent, k.Solvent.Name,
+					quantity.FormatWater(o.Figure("residual, low")*1e-6), quantity.FormatWater(o.Figure("residual, high")*1e-6))
+			} else {
+				add("the residual of %s in %s is one published or recalled figure, from its own dose and time", o.Agent, k.Solvent.Name)
 			}
 		case steps.Buy:
 			add("water of the dry grade is its limit as sold, before the bottle is opened; the time of delivery is not counted: order in time")
