@@ -17,11 +17,25 @@ func (s *shelf) readMatrix() {
 					if s.cat.Agents[row.Key] == nil {
 						row.Node.Fail("%q is not an agent known here%s", row.Key, row.Node.Offer(row.Key, keysOf(s.cat.Agents)))
 					}
-					s.cat.Matrix[[2]string{class.Key, row.Key}] = s.verdict(row.Node, common)
+					s.enter(class.Key, row, s.verdict(row.Node, common))
 				}
 			}
 		}
 	})
+}
+
+// enter sets a verdict. Own data may make a built-in one stricter; a dangerous
+// pair stays dangerous whatever they say.
+func (s *shelf) enter(who string, row document.Entry, v Verdict) {
+	before, known := s.cat.Matrix[[2]string{who, row.Key}]
+	if solvent := s.cat.Solvents[who]; !known && solvent != nil {
+		before, known = s.cat.Matrix[[2]string{solvent.Class, row.Key}]
+	}
+	if s.owning && known && before.Word == "dangerous" && v.Word != "dangerous" {
+		row.Node.Fail("%s with %s is dangerous (%s) and cannot be accepted; own data may make a verdict stricter, not this one milder", who, row.Key, before.Reason)
+		return
+	}
+	s.cat.Matrix[[2]string{who, row.Key}] = v
 }
 
 // verdict reads {word: reason}, with an origin of its own where the common one does not hold.

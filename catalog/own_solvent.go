@@ -32,7 +32,11 @@ func (s *shelf) readOwnSolvents(n *document.Node) {
 		if f.Has("key") && f.Get("key").Text() != e.Key {
 			f.Get("key").Fail("%q does not match the key of the entry, %q", f.Get("key").Text(), e.Key)
 		}
-		s.cat.Solvents[e.Key] = s.ownSolvent(e, f)
+		own := s.ownSolvent(e, f)
+		if built := s.cat.Solvents[e.Key]; built != nil && built.Class != own.Class {
+			f.Get("class").Fail("%s is of class %q in the built-in catalog; own data cannot move it to %q, since the class decides which agents may meet it", e.Key, built.Class, own.Class)
+		}
+		s.cat.Solvents[e.Key] = own
 	}
 }
 

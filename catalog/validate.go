@@ -1,7 +1,9 @@
 package catalog
 
 import (
+	"maps"
 	"math"
+	"slices"
 	"strings"
 
 	"parch/internal/document"
@@ -67,6 +69,54 @@ func checkFormula(f document.Fields, v *Solvent) {
 	if count.halogenated() != v.Hazards.Halogenated && f.Has("hazards") {
 		f.Get("hazards").Fail("\"halogenated\" does not fit the formula, %s", v.Formula)
 	}
+	if why := count.notOf(v.Class); why != "" {
+		f.Get("class").Fail("%s cannot be of class %q: %s", v.Formula, v.Class, why)
+	}
+}
+
+// makeup is what the formula of a class must hold and may hold. The class decides
+// which agents may meet a solvent, so a wrong one is dangerous.
+var makeup = map[string]struct{ must, may []string }{
+	"alkane":          {[]string{"C", "H"}, nil},
+	"aromatic":        {[]string{"C", "H"}, nil},
+	"ether":           {[]string{"C", "H", "O"}, nil},
+	"ester":           {[]string{"C", "H", "O"}, nil},
+	"carbonate-ester": {[]string{"C", "H", "O"}, nil},
+	"ketone":          {[]string{"C", "H", "O"}, nil},
+	"alcohol":         {[]string{"C", "H", "O"}, nil},
+	"small-alcohol":   {[]string{"C", "H", "O"}, nil},
+	"acid":            {[]string{"C", "H", "O"}, nil},
+	"nitrile":         {[]string{"C", "H", "N"}, nil},
+	"amide":           {[]string{"C", "H", "N", "O"}, nil},
+	"amine":           {[]string{"C", "H", "N"}, []string{"O"}},
+	"sulfoxide":       {[]string{"C", "H", "S", "O"}, nil},
+}
+
+// notOf says why a formula does not fit a class, or "". A halogenated solvent is
+// chlorinated or an aryl chloride, whatever else it is called.
+func (a atoms) notOf(class string) string {
+	halogens := class == "chlorinated" || class == "aryl-chloride"
+	if a.halogenated() != halogens {
+		if halogens {
+			return "it holds no halogen"
+		}
+		return "it is halogenated; write chlorinated or aryl-chloride"
+	}
+	m, known := makeup[class]
+	if !known {
+		return ""
+	}
+	for _, element := range m.must {
+		if a[element] == 0 {
+			return "it holds no " + element
+		}
+	}
+	for _, element := range slices.Sorted(maps.Keys(a)) {
+		if !slices.Contains(m.must, element) && !slices.Contains(m.may, element) {
+			return "it holds " + element
+		}
+	}
+	return ""
 }
 
 // allowance is how far the curves of a solvent may disagree.
