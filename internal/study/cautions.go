@@ -22,11 +22,19 @@ func cautions(k *routes.Case, r routes.Route) []catalog.Caution {
 		if v, ok := k.Catalog.Verdict(k.Solvent, s.Agent); ok && v.Word != "ok" {
 			out = append(out, ownCaution(catalog.Caution{
 				Code: "pair-" + s.Agent, Level: "caution", Origin: v.Origin,
-				Text: k.Catalog.Agents[s.Agent].Name + " with " + k.Solvent.Name + " is " + v.Word + ": " + v.Reason + ".",
+				Text: k.Catalog.Agents[s.Agent].Name + " with " + k.Solvent.Name + verdictWords(v) + v.Reason + ".",
 			}))
 		}
 	}
 	return out
+}
+
+// verdictWords leads over from a pair to the reason.
+func verdictWords(v catalog.Verdict) string {
+	if v.Word == "caution" {
+		return " asks for care: "
+	}
+	return " is " + v.Word + ", accepted by the job: "
 }
 
 // ownCaution marks a caution that is the user's own.

@@ -57,6 +57,18 @@ const (
 	waterColumn = 9 // clear of the chart to its left
 )
 
+// mostDrawn is how many routes of a lot a chart shows, the first by rank: more
+// names cannot be read.
+const mostDrawn = 10
+
+// firstOf says so in a title.
+func firstOf(lot *lotModel) string {
+	if len(lot.routes) <= mostDrawn {
+		return ""
+	}
+	return fmt.Sprintf(", the first %d routes", mostDrawn)
+}
+
 // compareCharts draws, for each lot, cost by head and beside it the water left,
 // below the table.
 func (l *layout) compareCharts(g *grid) {
@@ -64,8 +76,9 @@ func (l *layout) compareCharts(g *grid) {
 		if len(lot.routes) == 0 {
 			continue
 		}
-		places := rows{lot.routes[0].no - 1, lot.routes[len(lot.routes)-1].no - 1}
-		height := min(900, max(300, 130+30*len(lot.routes)))
+		drawn := min(len(lot.routes), mostDrawn)
+		places := rows{lot.routes[0].no - 1, lot.routes[drawn-1].no - 1}
+		height := max(300, 130+30*drawn)
 		row := g.roomForChart(float64(height) * pixelPoints)
 		g.draw(1, row, costWidth, height, fmt.Sprintf("Lot %d: cost", lot.no), l.costChart(lot, places))
 		g.draw(waterColumn, row, waterWidth, height, fmt.Sprintf("Lot %d: water", lot.no), l.waterChart(lot, places))
@@ -118,7 +131,7 @@ func (g *grid) pageUsed(row int, page, titles float64) float64 {
 
 func (l *layout) costChart(lot *lotModel, places rows) *excelize.Chart {
 	first, last := l.headRows.at(places.first), l.headRows.at(places.last)
-	c := baseChart(excelize.BarStacked, fmt.Sprintf("Lot %d: cost of a batch by head, %s", lot.no, l.currency()))
+	c := baseChart(excelize.BarStacked, fmt.Sprintf("Lot %d: cost of a batch by head, %s%s", lot.no, l.currency(), firstOf(lot)))
 	c.Format.AltText = fmt.Sprintf("Stacked bars: cost of a batch of lot %d by head of cost, one bar per route. The numbers are on sheet Costs, rows %d to %d.", lot.no, first, last)
 	gap, overlap := uint(55), 100
 	c.GapWidth, c.Overlap = &gap, &overlap
@@ -155,7 +168,7 @@ func (l *layout) billed(lot *lotModel, h int) bool {
 
 func (l *layout) waterChart(lot *lotModel, places rows) *excelize.Chart {
 	first, last := l.compareRows.at(places.first), l.compareRows.at(places.last)
-	c := baseChart(excelize.Line, fmt.Sprintf("Lot %d: water left, mg/kg (logarithmic axis)", lot.no))
+	c := baseChart(excelize.Line, fmt.Sprintf("Lot %d: water left, mg/kg (logarithmic axis)%s", lot.no, firstOf(lot)))
 	c.Format.AltText = fmt.Sprintf("Points on a logarithmic axis: water left by each route of lot %d, with lines for the target and the acceptance limit. The numbers are on sheet Compare, rows %d to %d.", lot.no, first, last)
 	low, high := math.Inf(1), lot.target
 	for _, r := range lot.routes {

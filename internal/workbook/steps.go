@@ -175,9 +175,12 @@ func (l *layout) waterFormat() string {
 }
 
 func (l *layout) figureBlock(g *grid, all []stepModel) {
-	row := g.table(g.next(), "Figures of the steps", []column{{name: "Lot"}, {name: "Route id"}, {"Route no", "1"}, {"Step", "1"},
+	row := g.table(g.next(), fmt.Sprintf("Figures of the steps, for the first %d routes of a lot and for single steps", mostDrawn), []column{{name: "Lot"}, {name: "Route id"}, {"Route no", "1"}, {"Step", "1"},
 		{name: "Figure"}, {}, {}, {}, {"Value", "1"}, {name: "Unit"}})
 	for _, s := range all {
+		if first := s.route.Rank > 0 && s.route.Rank <= mostDrawn; !first && len(s.route.Run.Outcomes) > 1 {
+			continue
+		}
 		for _, f := range s.Figures {
 			unit := f.Unit
 			if unit == "" {
