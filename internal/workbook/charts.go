@@ -96,7 +96,7 @@ func (g *grid) draw(column, row, width, height int, name string, c *excelize.Cha
 // that height would be cut by the end of the printed page.
 func (g *grid) roomForChart(points float64) int {
 	row := max(g.last(), g.drawnTo()) + 2
-	page := 0.95 * printableHeight / g.scale() // readers differ in the scale by a few per cent
+	page := 0.85 * printableHeight / g.scale() // readers differ in the scale and in the height of rows
 	titles := g.span(g.titles())
 	if used := g.pageUsed(row, page, titles); used+points > page && points < page-titles {
 		g.breaks = append(g.breaks, row-1) // the frame of the chart needs a little room above

@@ -19,7 +19,7 @@ const (
 
 func (l *layout) compare() *grid {
 	g := newGrid(sheetCompare, "One row per route. Costs and ranks follow the prices; water, hours and amounts are results of the program. Money in "+l.currency()+".",
-		tabResult, checkCell(), 26, 30, 9, 9, 10, 9, 9, 7, 9, 9, 9, 11, 10, 11, 12, 9, 11, 16)
+		tabResult, checkCell(), 26, 36, 9, 12, 10, 11, 10, 7, 9, 9, 9, 11, 11, 12, 12, 10, 13, 16)
 	l.compareBlock(g)
 	l.compareCharts(g)
 	l.excludedBlock(g)
