@@ -34,6 +34,8 @@ func (p *program) compare() *cli.Command {
 			&cli.StringFlag{Name: "csv", Usage: "write buying.csv, bills.csv and routes.csv into the folder `DIR`"},
 			&cli.StringFlag{Name: "settings-from", Usage: "take the settings from the JSON `F` of an earlier run"},
 			onOff("force", "write over files that are there already"),
+			&cli.UintFlag{Name: "draws", Usage: "draws of the uncertain inputs, `N`; not used yet"},
+			&cli.Uint64Flag{Name: "seed", Usage: "seed of the draws, `N`; not used yet"},
 			onOff("all", "print every route, not only the first of a lot"),
 			onOff("quiet", "print errors only"),
 		},
@@ -54,6 +56,11 @@ func (p *program) runCompare(c *cli.Context) error {
 	}
 	if err := q.complete(c); err != nil {
 		return err
+	}
+	for _, name := range []string{"draws", "seed"} {
+		if c.IsSet(name) && !q.quiet {
+			fmt.Fprintf(p.stderr, "--%s: not used yet\n", name)
+		}
 	}
 	j, cat, jobErr := p.readJob(c, q.job, q.demo)
 	opts, settingsErr := p.readSettings(q.settings)
