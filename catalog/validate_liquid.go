@@ -59,13 +59,16 @@ func atomicDensity(v *Solvent, tK float64) float64 {
 	return v.Density.At(tK) / (v.MolarMass.SI * 1e6 / (5 * volume))
 }
 
+// unusual is how much wider the bounds are for an own solvent, as a factor.
+const unusual = 1.3
+
 func expansion(v *Solvent, tK float64) float64 {
 	return math.Log(v.Density.At(tK-5)/v.Density.At(tK+5)) / 10
 }
 
 // checkLiquid compares the curves of a solvent with what liquids of its sort do. A
 // slip in a coefficient seldom leaves level and slope where they belong. An own
-// solvent may be unusual; only its slope is asked.
+// solvent may be unusual: its bounds are wider.
 func checkLiquid(f document.Fields, v *Solvent, slopeWithin float64) {
 	if v.Key == waterKey || v.MolarMass.SI == 0 {
 		return
@@ -77,10 +80,11 @@ func checkLiquid(f document.Fields, v *Solvent, slopeWithin float64) {
 	}
 	for _, list := range [][]usual{usualOfAll, kinds} {
 		for _, u := range list {
+			low, high := u.low, u.high
 			if v.Own {
-				break
+				low, high = low/unusual, high*unusual
 			}
-			if y := u.of(v, tK); !(y >= u.low && y <= u.high) {
+			if y := u.of(v, tK); !(y >= low && y <= high) {
 				f.Get(u.key).Fail("the %s at %.0f °C is %.3g in SI units; %s is usual", u.what, tK-zeroCelsiusK, y, u.text)
 			}
 		}

@@ -61,7 +61,7 @@ func TestAzeotropesThatChangeWithPressure(t *testing.T) {
 	}{
 		{"tetrahydrofuran", 5e3, "no azeotrope", "no azeotrope"},
 		{"diethyl-ether", 10e3, "no azeotrope", "no azeotrope"},
-		{"2-methyltetrahydrofuran", 2e3, "a homogeneous azeotrope", "a homogeneous azeotrope"},
+		{"2-methyltetrahydrofuran", 5e3, "a homogeneous azeotrope", "a homogeneous azeotrope"},
 	} {
 		s := sheet(t, c.solvent, c.pressurePa, 298.15)
 		notes := strings.Join(s.Notes, "\n")

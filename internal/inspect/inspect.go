@@ -84,6 +84,9 @@ func Solvent(c *catalog.Catalog, s *catalog.Solvent, pressurePa, receiverK float
 	sheet.Pairs = pairs(c, s)
 	sheet.addSources(c, origins(s, sheet.Pairs)...)
 	sheet.Notes = append(notes(sheet), sheet.changeNotes(m)...)
+	if sheet.BoilingK < s.Pure.MeltingK {
+		sheet.BoilingK = math.NaN() // the notes say that no liquid boils
+	}
 	sheet.Notes = append(sheet.Notes, knownNotes(c, s)...)
 	return sheet, nil
 }
@@ -206,9 +209,6 @@ func notes(s *Sheet) (list []string) {
 	}
 	if s.Azeotrope.Kind != thermo.NoAzeotrope {
 		outside("the azeotrope", s.Azeotrope.TempK)
-		if s.Azeotrope.TempK < kelvinAt0C {
-			list = append(list, "the azeotrope lies below 0 °C, where water freezes: it cannot be run")
-		}
 	}
 	if s.Floor.Return != thermo.None {
 		outside("the receiver", s.ReceiverK)

@@ -85,6 +85,9 @@ func azeotrope(m *thermo.Mixture, pressurePa float64) (thermo.Azeotrope, error) 
 			return a, err
 		}
 	}
+	if frozen := math.Max(m.Water.MeltingK, m.Solvent.MeltingK); a.Kind != thermo.NoAzeotrope && tK < frozen {
+		return a, fmt.Errorf("the azeotrope is computed at %.1f °C, where one of the two is frozen (%.1f °C)", tK-kelvinAt0C, frozen-kelvinAt0C)
+	}
 	return a, m.CheckTemperature(tK)
 }
 
