@@ -35,7 +35,7 @@ var azeotropes = []struct {
 	{"tetrahydrofuran", "Zeitsch, The Chemistry and Technology of Furfural (2000)", thermo.Homogeneous, 63.5, 5.3},
 	{"tetrahydrofuran", "Fan et al., Adv. Mater. Res. (2013) 149", thermo.Homogeneous, 63.4, math.NaN()},
 	{"tetrahydrofuran", "Chapman et al., J. Membr. Sci. 268 (2006) 13", thermo.Homogeneous, math.NaN(), 5.3},
-	{"acetonitrile", "Merck Index (rounded values)", thermo.Homogeneous, 76, 16},
+	{"acetonitrile", "a printed index of chemicals and drugs (rounded values)", thermo.Homogeneous, 76, 16},
 	{"toluene", "from memory, believed Horsley, Azeotropic Data III (1973)", thermo.Heterogeneous, 84.1, 19.6},
 	// The handbook row of dichloromethane (38.8 °C, 0.4 %) has a water activity
 	// far from one and is not used; this one is from memory, believed Horsley,
