@@ -107,7 +107,7 @@ func (c *Case) refuseStage(s Stage, last bool) (reason, source string) {
 	case steps.Salt:
 		return c.refuseSalt(s.Agent, last)
 	case steps.Soak, steps.Column:
-		return c.refuseAgent(s.Agent)
+		return c.refuseSorbent(s.Agent)
 	case steps.Reactive:
 		return c.refuseReactive(s.Agent)
 	case steps.Buy:
@@ -190,6 +190,19 @@ func ownMark(v catalog.Verdict) string {
 	return ""
 }
 
+// refuseSorbent keeps gels and oxides back unless the job accepts them by name:
+// what they hold after activation is not known, and the history of a lot is that
+// of a molecular sieve.
+func (c *Case) refuseSorbent(agent string) (reason, source string) {
+	if reason, source = c.refuseAgent(agent); reason != "" {
+		return reason, source
+	}
+	if a := c.Catalog.Agents[agent]; a.Kind == "oxide" && !c.accepted(agent) {
+		return fmt.Sprintf("what %s holds after activation is not known; name it under accept: agents, and the sieve's history is taken for it", a.Name), "assumption"
+	}
+	return "", ""
+}
+
 func (c *Case) accepted(agent string) bool {
 	return slices.Contains(c.Job.Accept.Unsuitable, agent) || slices.Contains(c.Job.Accept.Agents, agent)
 }
@@ -207,7 +220,7 @@ func (c *Case) refuseBuy() (reason, source string) {
 }
 
 // Label is a route in words.
-func (c *Case) Label(r Route) string {
+func (c *Case) Label(r Route, settings Settings) string {
 	parts := make([]string, len(r))
 	for i, s := range r {
 		switch s.Kind {
@@ -221,6 +234,9 @@ func (c *Case) Label(r Route) string {
 			parts[i] = "stir with " + c.Catalog.Agents[s.Agent].Name
 		case steps.Soak:
 			parts[i] = "stand over " + c.Catalog.Agents[s.Agent].Name
+			if settings.at(r, i).stirred {
+				parts[i] = "stir over " + c.Catalog.Agents[s.Agent].Name
+			}
 		case steps.Column:
 			parts[i] = "pump through " + c.Catalog.Agents[s.Agent].Name
 		case steps.Reactive:

@@ -119,7 +119,7 @@ func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog
 		if err != nil {
 			return Lot{}, err
 		}
-		route := Route{ID: r.ID(), Label: k.Label(r), Run: run, Cautions: cautions(k, r), Warnings: append(runWarnings(k, run), ovenWarning(k, run)...)}
+		route := Route{ID: r.ID(), Label: k.Label(r, run.Settings), Run: run, Cautions: cautions(k, r), Warnings: append(runWarnings(k, run), ovenWarning(k, run)...)}
 		if err := route.account(k, site, book); err != nil {
 			return Lot{}, fmt.Errorf("%s: %w", r.ID(), err)
 		}
