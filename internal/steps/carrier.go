@@ -11,6 +11,11 @@ import (
 // ErrNoCarrier means that a carrier cannot dry the solvent; the error says why.
 var ErrNoCarrier = errors.New("this carrier does not work here")
 
+// ErrUnsolved means that the calculation of a run did not come to its end: seen
+// where the condensate hovers between one layer and two. It says nothing of the
+// carrier.
+var ErrUnsolved = errors.New("the calculation did not come to its end")
+
 // CarrierEquilibrium is what pot and receiver do with water, a solvent and a
 // carrier at one pressure and one receiver temperature.
 type CarrierEquilibrium struct {

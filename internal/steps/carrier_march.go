@@ -8,9 +8,9 @@ import (
 // Steps of the integration over moles of vapour.
 const (
 	defaultCarrierError = 5e-5
-	carrierFirstStep    = 0.01 // of the pot
-	carrierLongestStep  = 2.0  // of the pot
-	carrierShortestStep = 1e-7 // of the pot
+	carrierFirstStep    = 0.01            // of the pot
+	carrierLongestStep  = 2.0             // of the pot
+	carrierShortestStep = goneShare / 100 // of the pot, so that a trace boiled off at a steady rate is followed until it is gone
 	carrierMostSteps    = 3000
 	progressAccuracy    = 1e-5
 	mostGrowth          = 1.0 // of ln n in a step; nothing in the pot should grow
@@ -55,7 +55,7 @@ func (r *refluxing) march(rate flow, progress func(*state, *condensed) float64, 
 		}
 		step = math.Min(step*math.Min(5, 0.9*math.Pow(math.Max(off, 1e-9), -0.2)), carrierLongestStep*total(r.s.pot))
 	}
-	return fmt.Errorf("%s and %s: the distillation did not end in %d steps, at %.3g mg/kg of water in the pot",
+	return fmt.Errorf("%w: %s and %s, %d steps, %.3g mg/kg of water in the pot", ErrUnsolved,
 		r.m.Pure[inSolvent].Key, r.m.Pure[inCarrier].Key, len(r.course), r.dryness(&r.s)*mgPerKg)
 }
 
@@ -130,7 +130,8 @@ func growth(s, d *state) (g Fractions) {
 	return g
 }
 
-const goneShare = 1e-12
+// goneShare is the mole share below which a component is gone: under 0.001 mg/kg of water.
+const goneShare = 1e-9
 
 // mixed is the weighted sum of the first n growths.
 func mixed(weights *[stages]float64, g *[stages]Fractions, n int) (m Fractions) {

@@ -13,7 +13,8 @@ func (r *refluxing) strip() error {
 	if first <= 0 {
 		return nil
 	}
-	if err := r.strippable(carrierShare(&r.s)); err != nil {
+	before := carrierShare(&r.s)
+	if err := r.strippable(before); err != nil {
 		return err
 	}
 	lnHeel := math.Log(r.leastKg() / r.massKg(r.s.pot))
@@ -28,7 +29,10 @@ func (r *refluxing) strip() error {
 	if err := r.march(r.stripping, progress, ignore); err != nil {
 		return err
 	}
-	if carrierShare(&r.s) > r.plan.CarrierLimit*(1+1e-4) {
+	if after := carrierShare(&r.s); after >= before {
+		return fmt.Errorf("%w: the dried pot holds %.3g %% %s before stripping and %.3g %% after it: the solvent leaves first; take less carrier",
+			ErrNoCarrier, 100*before, r.m.Pure[inCarrier].Key, 100*after)
+	} else if after > r.plan.CarrierLimit*(1+1e-4) {
 		r.stripWhy = AtHeel
 	}
 	return nil

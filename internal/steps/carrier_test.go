@@ -167,6 +167,57 @@ func TestCarrierAgainstFineSteps(t *testing.T) {
 	}
 }
 
+// Six stages strip water at a steady rate until none is left; the carrier is
+// then still to be driven off. Found by a random run of the balances below.
+func TestCarrierRunOutlivesItsWater(t *testing.T) {
+	eq := carrierEquilibrium(t, "n-n-dimethylformamide", "toluene", 10)
+	water := math.Exp(-9.126953125)
+	feed := carrierLot(eq, 12.064460898202128, water)
+	plan := withColumn(feed, 0.15447425842285156, 6)
+	plan.Goal = water * 0.06698720507519904
+	r := rig("either")
+	r.HeaterW, r.Charges = 624.7940301895142, 2
+	o, err := steps.RunCarrier(eq, feed, plan, r, rules)
+	if err != nil {
+		t.Fatal(err)
+	}
+	near(t, "water", o.Balance.WaterOutKg+o.Balance.WaterRemovedKg, o.Balance.WaterInKg, 1e-8)
+	if last := o.Course[len(o.Course)-1]; last.Water > plan.Goal || last.Carrier > 1.001*plan.CarrierLimit {
+		t.Errorf("ended at %.3g water and %.3g carrier; wanted %.3g and %.3g", last.Water, last.Carrier, plan.Goal, plan.CarrierLimit)
+	}
+}
+
+// The head of the dried pot is richer in carrier than the pot, yet the solvent
+// leaves first: no run may end with the carrier alone as its product.
+func TestCarrierKeepsItsSolvent(t *testing.T) {
+	refused := 0
+	for _, solvent := range []string{"1-butanol", "2-propanol"} {
+		for _, receiver := range []float64{10, 25} {
+			eq := carrierEquilibrium(t, solvent, "toluene", receiver)
+			water := math.Exp(-2.5)
+			feed := carrierLot(eq, 13.072277426719666, water)
+			plan := withColumn(feed, 0.786956688551476, 6)
+			plan.PreFilled, plan.Goal = true, water*0.010920191308129679
+			r := rig("either")
+			r.HeaterW, r.Charges = 1437, 1
+			o, err := steps.RunCarrier(eq, feed, plan, r, rules)
+			switch {
+			case errors.Is(err, steps.ErrNoCarrier):
+				if strings.Contains(err.Error(), "before stripping") {
+					refused++
+				}
+			case err != nil:
+				t.Error(err)
+			case o.Out.SolventKg <= o.Out.CarrierKg:
+				t.Errorf("%s at %g °C: %g kg of solvent and %g kg of carrier", solvent, receiver, o.Out.SolventKg, o.Out.CarrierKg)
+			}
+		}
+	}
+	if refused == 0 {
+		t.Error("no run was refused for its product")
+	}
+}
+
 // Water, solvent, carrier and heat close, whatever the lot, the dose and the still.
 func TestCarrierBalances(t *testing.T) {
 	var eqs []*steps.CarrierEquilibrium
@@ -175,7 +226,7 @@ func TestCarrierBalances(t *testing.T) {
 			eqs = append(eqs, carrierEquilibrium(t, k[0], k[1], receiver))
 		}
 	}
-	ran := 0
+	ran, unsolved := 0, 0
 	rapid.Check(t, func(rt *rapid.T) {
 		eq := rapid.SampledFrom(eqs).Draw(rt, "mixture")
 		water := math.Exp(rapid.Float64Range(math.Log(100e-6), math.Log(0.3)).Draw(rt, "ln w"))
@@ -187,10 +238,15 @@ func TestCarrierBalances(t *testing.T) {
 		r.HeaterW = rapid.Float64Range(300, 4000).Draw(rt, "W")
 		r.Charges = rapid.IntRange(1, 3).Draw(rt, "charges")
 		o, err := steps.RunCarrier(eq, feed, plan, r, rules)
-		if errors.Is(err, steps.ErrNoCarrier) {
+		var split *thermo.NotConverged
+		switch {
+		case errors.Is(err, steps.ErrNoCarrier):
 			return
-		}
-		if err != nil {
+		case errors.Is(err, steps.ErrUnsolved), errors.As(err, &split):
+			unsolved++
+			t.Log(err)
+			return
+		case err != nil:
 			rt.Fatal(err)
 		}
 		ran++
@@ -211,6 +267,10 @@ func TestCarrierBalances(t *testing.T) {
 	})
 	if ran == 0 {
 		t.Error("no run went through")
+	}
+	// Near the edge of two layers about 1 run in 3000 is not solved; it says so.
+	if unsolved > 1+ran/100 {
+		t.Errorf("%d runs were not solved, %d were", unsolved, ran)
 	}
 }
 
