@@ -268,7 +268,7 @@ func TestCarrierBalances(t *testing.T) {
 	if ran == 0 {
 		t.Error("no run went through")
 	}
-	// Near the edge of two layers about 1 run in 3000 is not solved; it says so.
+	// Near the edge of two layers 7 runs of 12000 were not solved; they say so.
 	if unsolved > 1+ran/100 {
 		t.Errorf("%d runs were not solved, %d were", unsolved, ran)
 	}
