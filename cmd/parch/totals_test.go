@@ -16,15 +16,13 @@ import (
 	"testing"
 
 	"parch/internal/cli"
+	"parch/internal/outside"
 )
 
 // The lines of bills.csv, added up by awk, are the costs of the JSON and, to the
 // cent, those on the sheet Compare, read without the program's own libraries.
 func TestTotalsAgreeEverywhere(t *testing.T) {
-	awk, err := exec.LookPath("awk")
-	if err != nil {
-		t.Skip("awk is not installed")
-	}
+	awk := outside.Program(t, "awk")
 	dir := t.TempDir()
 	path := func(name string) string { return filepath.Join(dir, name) }
 	var stdout, stderr bytes.Buffer

@@ -14,6 +14,7 @@ import (
 	"github.com/shopspring/decimal"
 
 	"parch/internal/costs"
+	"parch/internal/outside"
 )
 
 // Capital recovery factors as printed in tables of engineering economy (to five
@@ -62,13 +63,7 @@ func TestAgainstASpreadsheet(t *testing.T) {
 // evaluate has a spreadsheet compute formulas (OpenFormula) to 12 decimals.
 func evaluate(t *testing.T, formulas []string) []float64 {
 	t.Helper()
-	soffice, err := exec.LookPath("soffice")
-	if err != nil {
-		if os.Getenv("CI") != "" {
-			t.Fatal("soffice is not installed: the formulas would go unchecked")
-		}
-		t.Skip("soffice is not installed")
-	}
+	soffice := outside.Program(t, "soffice")
 	var rows strings.Builder
 	for _, f := range formulas {
 		var escaped strings.Builder

@@ -15,6 +15,7 @@ import (
 
 	"parch/catalog"
 	"parch/internal/job"
+	"parch/internal/outside"
 	"parch/internal/routes"
 	"parch/internal/study"
 )
@@ -31,13 +32,7 @@ const alwaysRecalculate = `<?xml version="1.0" encoding="UTF-8"?>
 // converted opens the files with the oracle and returns what it saves.
 func converted(t *testing.T, recalculate bool, files ...[]byte) []*book {
 	t.Helper()
-	soffice, err := exec.LookPath("soffice")
-	if err != nil {
-		if os.Getenv("CI") != "" {
-			t.Fatal("soffice is not installed: the workbook would go unchecked")
-		}
-		t.Skip("soffice is not installed")
-	}
+	soffice := outside.Program(t, "soffice")
 	dir := t.TempDir()
 	profile := filepath.Join(dir, "profile")
 	if recalculate {
