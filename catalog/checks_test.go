@@ -5,10 +5,11 @@ import (
 	"fmt"
 	"math"
 	"slices"
-	"strings"
 	"testing"
 
 	"parch/catalog"
+	"parch/internal/mixture"
+	"parch/internal/proof"
 	"parch/internal/thermo"
 )
 
@@ -21,141 +22,6 @@ func checks(t testing.TB) *catalog.Checks {
 		t.Fatalf("the built-in checks have problems:\n%v", err)
 	}
 	return c
-}
-
-func mixture(cat *catalog.Catalog, key string) *thermo.Mixture {
-	s := cat.Solvents[key]
-	return &thermo.Mixture{Water: &cat.Solvents["water"].Pure, Solvent: &s.Pure, NRTL: s.Water.NRTL}
-}
-
-// compute returns what the catalog gives for a check, in the unit of its value.
-func compute(cat *catalog.Catalog, c *catalog.Check) (float64, error) {
-	switch group, _, _ := strings.Cut(c.Quantity, "-"); group {
-	case "azeotrope":
-		return azeotrope(cat, c)
-	case "water", "solvent":
-		return solubility(cat, c)
-	case "gamma":
-		return activity(cat, c)
-	case "ternary":
-		return ternaryAzeotrope(cat, c)
-	case "loading":
-		return 100 * cat.Agents[c.Subject].Isotherm.LoadingKgPerKg(c.PressurePa, c.TempK), nil
-	case "share":
-		return 100 * cat.Agents[c.Subject].Claim.Removed.SI, nil
-	case "hydrate":
-		for _, h := range cat.Agents[c.Subject].Hydrates {
-			if h.Pair == c.Partner {
-				return h.Activity.SI, nil
-			}
-		}
-		return math.NaN(), fmt.Errorf("no pair %q", c.Partner)
-	}
-	return pure(cat, c)
-}
-
-func pure(cat *catalog.Catalog, c *catalog.Check) (float64, error) {
-	p := &cat.Solvents[c.Subject].Pure
-	switch c.Quantity {
-	case "boiling-point":
-		tK, err := thermo.Boil(p, c.PressurePa)
-		return tK - zeroCelsiusK, err
-	case "vapour-pressure":
-		return p.VapourPressurePa.At(c.TempK), nil
-	case "density":
-		return p.DensityKgPerM3.At(c.TempK), nil
-	case "heat-of-vaporization":
-		return p.HeatOfVaporizationJ.At(c.TempK) / 1e3, nil
-	case "heat-capacity":
-		return p.HeatCapacityJPerMolK.At(c.TempK), nil
-	case "viscosity":
-		return p.ViscosityPaS.At(c.TempK) * 1e3, nil
-	}
-	return math.NaN(), fmt.Errorf("nothing computes %q", c.Quantity)
-}
-
-func solubility(cat *catalog.Catalog, c *catalog.Check) (float64, error) {
-	m := mixture(cat, c.Subject)
-	s, err := m.SplitAt(c.TempK)
-	switch {
-	case err != nil:
-		return math.NaN(), err
-	case !s.Exists:
-		return math.NaN(), nil
-	case c.Quantity == "solvent-solubility":
-		return 100 * (1 - m.MassFraction(s.XAqueous)), nil
-	}
-	return 100 * m.MassFraction(s.XOrganic), nil
-}
-
-func azeotrope(cat *catalog.Catalog, c *catalog.Check) (float64, error) {
-	m := mixture(cat, c.Subject)
-	a, err := m.FindAzeotrope(c.PressurePa)
-	switch {
-	case err != nil:
-		return math.NaN(), err
-	case c.Quantity == "azeotrope-absent" && a.Kind == thermo.NoAzeotrope:
-		return 0, nil
-	case c.Quantity == "azeotrope-absent":
-		return 1, nil
-	case a.Kind == thermo.NoAzeotrope:
-		return math.NaN(), nil
-	case c.Quantity == "azeotrope-water":
-		return 100 * m.MassFraction(a.YWater), nil
-	}
-	return a.TempK - zeroCelsiusK, nil
-}
-
-func activity(cat *catalog.Catalog, c *catalog.Check) (float64, error) {
-	if c.Quantity == "gamma-water" {
-		return mixture(cat, c.Subject).GammaInfinite(c.TempK), nil
-	}
-	pair := cat.Pairs[[2]string{c.Subject, c.Partner}]
-	if pair == nil {
-		return math.NaN(), fmt.Errorf("no set for %s + %s", c.Subject, c.Partner)
-	}
-	if c.Quantity == "gamma-solvent-in-carrier" {
-		ln, _ := pair.NRTL.Pair(0, c.TempK)
-		return math.Exp(ln), nil
-	}
-	_, ln := pair.NRTL.Pair(1, c.TempK)
-	return math.Exp(ln), nil
-}
-
-// ternaryOf joins the sets of a solvent and a carrier: the ternary set where there
-// is one, the three pairs elsewhere.
-func ternaryOf(cat *catalog.Catalog, solvent, carrier string) (*thermo.Ternary, error) {
-	key := [2]string{solvent, carrier}
-	m := &thermo.Ternary{Pure: [thermo.MaxComponents]*thermo.Pure{&cat.Solvents["water"].Pure, &cat.Solvents[solvent].Pure, &cat.Solvents[carrier].Pure}}
-	if set := cat.Ternaries[key]; set != nil {
-		m.NRTL, m.Extra = set.NRTL, set.Extra
-		return m, nil
-	}
-	pair := cat.Pairs[key]
-	if pair == nil {
-		return nil, nil
-	}
-	m.NRTL = thermo.JoinPairs(cat.Solvents[solvent].Water.NRTL, cat.Solvents[carrier].Water.NRTL, pair.NRTL)
-	return m, nil
-}
-
-func ternaryAzeotrope(cat *catalog.Catalog, c *catalog.Check) (float64, error) {
-	m, err := ternaryOf(cat, c.Subject, c.Partner)
-	if m == nil || err != nil {
-		return math.NaN(), err
-	}
-	a, err := m.FindAzeotrope(c.PressurePa)
-	if err != nil {
-		return math.NaN(), err
-	}
-	mass := m.Mass(a.Y)
-	switch c.Quantity {
-	case "ternary-azeotrope-water":
-		return 100 * mass[thermo.InWater], nil
-	case "ternary-azeotrope-solvent":
-		return 100 * mass[thermo.InSolvent], nil
-	}
-	return a.TempK - zeroCelsiusK, nil
 }
 
 // Published rows must hold or say why not; rows from memory decide nothing.
@@ -171,7 +37,7 @@ func TestChecks(t *testing.T) {
 			counts[c.Kind] = n
 		}
 		n.rows++
-		computed, err := compute(cat, c)
+		computed, err := proof.Compute(cat, c)
 		switch {
 		case err == nil && c.Holds(computed):
 			n.held++
@@ -204,7 +70,7 @@ func isoactivity(cat *catalog.Catalog, l catalog.TieLine) (water, alcohol float6
 	if set == nil {
 		return math.NaN(), math.NaN()
 	}
-	m, _ := ternaryOf(cat, l.Alcohol, l.Carrier)
+	m, _ := mixture.Ternary(cat, l.Alcohol, l.Carrier)
 	organic, aqueous := m.Mole(l.Organic), m.Mole(l.Aqueous)
 	a, b := m.LnGamma(organic, l.TempK), m.LnGamma(aqueous, l.TempK)
 	ratio := func(i int) float64 { return math.Log(organic[i]/aqueous[i]) + a[i] - b[i] }
@@ -311,7 +177,7 @@ func layerMisses(cat *catalog.Catalog, all *catalog.Checks) map[[2]string]layerM
 	}
 	out := map[[2]string]layerMiss{}
 	for key, l := range cat.Layers {
-		alone, _, err := mixture(cat, key[1]).Solubility(298.15)
+		alone, _, err := mixture.Pair(cat, cat.Solvents[key[1]]).Solubility(298.15)
 		if err != nil {
 			alone = math.NaN()
 		}

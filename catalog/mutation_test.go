@@ -17,6 +17,7 @@ import (
 	"testing/fstest"
 
 	"parch/catalog"
+	"parch/internal/proof"
 	"parch/internal/thermo"
 )
 
@@ -192,7 +193,7 @@ func newBench(t *testing.T) *bench {
 	b := &bench{cat: cat, fsys: shelfCopy(t), checks: checks(t), by: map[string][]int{}}
 	for i := range b.checks.Rows {
 		c := &b.checks.Rows[i]
-		computed, err := compute(cat, c)
+		computed, err := proof.Compute(cat, c)
 		b.holds = append(b.holds, err == nil && c.Holds(computed))
 		b.by[c.Subject] = append(b.by[c.Subject], i)
 		if c.Partner != "" && c.Partner != c.Subject {
@@ -306,7 +307,7 @@ func (b *bench) rowFails(cat *catalog.Catalog, m mutation) bool {
 			continue
 		}
 		c := &b.checks.Rows[i]
-		if computed, err := compute(cat, c); err != nil || !c.Holds(computed) {
+		if computed, err := proof.Compute(cat, c); err != nil || !c.Holds(computed) {
 			return true
 		}
 	}

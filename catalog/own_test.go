@@ -10,6 +10,7 @@ import (
 	"time"
 
 	"parch/catalog"
+	"parch/internal/mixture"
 	"parch/internal/thermo"
 )
 
@@ -61,7 +62,7 @@ func TestSolventFromFourNumbers(t *testing.T) {
 		}
 	}
 	floor := func(key string) float64 {
-		f, err := mixture(cat, key).TrapFloor(298.15, 101325)
+		f, err := mixture.Pair(cat, cat.Solvents[key]).TrapFloor(298.15, 101325)
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -74,7 +75,7 @@ func TestSolventFromFourNumbers(t *testing.T) {
 
 func held(t *testing.T, cat *catalog.Catalog, key string, tK float64) float64 {
 	t.Helper()
-	water, ok, err := mixture(cat, key).Solubility(tK)
+	water, ok, err := mixture.Pair(cat, cat.Solvents[key]).Solubility(tK)
 	if err != nil || !ok {
 		t.Fatalf("%s at %.1f K: %v", key, tK, err)
 	}
@@ -209,7 +210,7 @@ func TestOnePointModel(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	m := mixture(cat, "bench-xylene")
+	m := mixture.Pair(cat, cat.Solvents["bench-xylene"])
 	for tK := 278.15; tK <= 383.15; tK += 15 {
 		if n := m.CountGaps(tK); n != 1 {
 			t.Errorf("%d gaps at %.0f K", n, tK)

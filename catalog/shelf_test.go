@@ -6,6 +6,7 @@ import (
 	"testing"
 
 	"parch/catalog"
+	"parch/internal/mixture"
 	"parch/internal/thermo"
 )
 
@@ -94,7 +95,7 @@ func TestGaps(t *testing.T) {
 		t.Error(err)
 	}
 	for key, want := range map[string]int{"toluene": 1, "n-heptane": 1, "cyclohexane": 1, "n-butyl-acetate": 1, "ethanol": 0, "tetrahydrofuran": 0, "acetone": 0} {
-		if n := mixture(cat, key).CountGaps(298.15); n != want {
+		if n := mixture.Pair(cat, cat.Solvents[key]).CountGaps(298.15); n != want {
 			t.Errorf("%s: %d gaps, want %d", key, n, want)
 		}
 	}
@@ -104,7 +105,7 @@ func TestGaps(t *testing.T) {
 	spoilt.Water = &pair
 	other := *cat
 	other.Solvents = map[string]*catalog.Solvent{"water": cat.Solvents["water"], "ethanol": &spoilt}
-	if n := mixture(&other, "ethanol").CountGaps(298.15); n != 1 {
+	if n := mixture.Pair(&other, &spoilt).CountGaps(298.15); n != 1 {
 		t.Errorf("a spoilt set has %d gaps; the count sees none", n)
 	}
 }

@@ -18,7 +18,6 @@ var floors = []string{
 	"parch/internal/proof",
 	"parch/internal/bench",
 	"parch/internal/study",
-	"parch/internal/proof",
 	"parch/internal/search",
 	"parch/internal/spread",
 	"parch/internal/costs",
@@ -32,6 +31,7 @@ var floors = []string{
 	"parch/internal/thermo",
 	"parch/internal/document",
 	"parch/internal/quantity",
+	"parch/internal/outside",
 }
 
 func TestImportsPointDown(t *testing.T) {

@@ -13,7 +13,7 @@ const zeroCelsiusK = 273.15
 
 // checkRow computes one figure of the tables of checks.
 func checkRow(cat *catalog.Catalog, c *catalog.Check) Row {
-	computed, err := compute(cat, c)
+	computed, err := Compute(cat, c)
 	row := Row{
 		Quantity: c.Quantity, Subject: c.Subject, Partner: c.Partner, TempK: c.TempK, PressurePa: c.PressurePa,
 		Published: c.Value, Computed: computed, Unit: c.Unit, Limit: c.Limit, LimitUnit: c.LimitUnit,
@@ -35,7 +35,8 @@ var computers = map[string]func(*catalog.Catalog, *catalog.Check) (float64, erro
 	"hydrate-activity": hydrateActivity, "loading": loading, "share-removed": shareRemoved,
 }
 
-func compute(cat *catalog.Catalog, c *catalog.Check) (float64, error) {
+// Compute returns what the catalog gives for a check, in the unit of its value.
+func Compute(cat *catalog.Catalog, c *catalog.Check) (float64, error) {
 	f, ok := computers[c.Quantity]
 	if !ok {
 		return math.NaN(), fmt.Errorf("nothing computes %q", c.Quantity)
