@@ -46,7 +46,7 @@ func (p *program) app() *cli.App {
 		Writer:                    p.stdout,
 		ErrWriter:                 p.stderr,
 		Flags:                     []cli.Flag{onOff("version", "print the version and the date of the catalog")},
-		Commands:                  []*cli.Command{p.compare(), p.check(), p.template(), p.step(), p.inspect(), p.catalog(), p.proof()},
+		Commands:                  []*cli.Command{p.compare(), p.check(), p.template(), p.step(), p.inspect(), p.catalog(), p.proof(), p.schema()},
 		Action:                    p.noCommand,
 		OnUsageError:              func(_ *cli.Context, err error, _ bool) error { return flagFailure(err, nil) },
 		ExitErrHandler:            func(*cli.Context, error) {},
