@@ -160,7 +160,7 @@ func (w *file) valuesAt(reference string) ([]cell, error) {
 		return nil, err
 	}
 	for _, g := range w.grids {
-		if g.name == sheet {
+		if quotedSheet(g.name) == sheet {
 			return g.cells(c1, r1, c2, r2)
 		}
 	}

@@ -33,8 +33,8 @@ func (l *layout) checks() *grid {
 	g.frozenRows = first - 1
 	always := l.testRows(g, first, l.alwaysTests(), "IFERROR((ABS(E%[1]d)>F%[1]d)*1,1)", `IF(H%[1]d>0,"fails","holds")`)
 	next := g.table(g.next(), "Checked against the program while no input and no price is edited", checkColumns)
-	unedited := l.testRows(g, next, l.programTests(), "IFERROR((edited_inputs=0)*(ABS(E%[1]d)>F%[1]d),1)",
-		fmt.Sprintf(`IF(H%%[1]d>0,"fails",%s)`, fixed(3, frameRows+4)))
+	unedited := l.testRows(g, next, l.programTests(), "IFERROR((inputs_changed=0)*(ABS(E%[1]d)>F%[1]d),1)",
+		fmt.Sprintf(`IF(H%%[1]d>0,"fails",%s)`, fixed(3, frameRows+3)))
 	l.masterRows(g, always, unedited)
 	for _, r := range []rows{always, unedited} {
 		if r.empty() {
@@ -48,7 +48,7 @@ func (l *layout) checks() *grid {
 }
 
 func (l *layout) masterRows(g *grid, always, unedited rows) {
-	total, inputs, edited, compared, say := frameRows+1, frameRows+2, frameRows+3, frameRows+4, frameRows+5
+	total, edited, compared, say := frameRows+1, frameRows+2, frameRows+3, frameRows+4
 	row := func(r int, what string, c cell) {
 		g.put(2, r, text(words, what))
 		g.put(3, r, c)
@@ -59,20 +59,11 @@ func (l *layout) masterRows(g *grid, always, unedited rows) {
 			sum += fmt.Sprintf("+SUM(H%d:H%d)", r.first, r.last)
 		}
 	}
-	differ := func(sheet string, r rows) string {
-		if r.empty() {
-			return "0"
-		}
-		value, run := on(sheet, r.column(colValue)), on(sheet, r.column(colRun))
-		return fmt.Sprintf(`SUMPRODUCT((%s<>%s)*(%s<>""))`, value, run, run)
-	}
 	row(total, "Sum of all flags: 0 when all checks hold", whole(sum, 0))
-	row(inputs, "Inputs that differ from the run", whole(differ(sheetInputs, l.inputRows), 0))
-	row(edited, "Inputs and prices that differ from the run", whole(fixed(3, inputs)+"+"+differ(sheetPrices, l.priceRows), 0))
+	row(edited, "Inputs and prices that differ from the run", whole(changedName, 0))
 	row(compared, "Comparison with the program", derived(fmt.Sprintf(`IF(%s=0,"holds","not compared")`, fixed(3, edited)), "holds"))
 	row(say, "Shown at the top of every sheet", derived(fmt.Sprintf(`IF(%s=0,"%s","See Checks")&IF(%s,". Run parch again","")`, fixed(3, total), checksHold, l.rerun()), checksHold))
 	l.name("check_total", sheetChecks, 3, total)
-	l.name("edited_inputs", sheetChecks, 3, edited)
 	l.name("check_message", sheetChecks, 3, say)
 }
 

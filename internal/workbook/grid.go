@@ -36,8 +36,16 @@ func (c cell) isNumber() bool             { _, ok := c.value.(float64); return o
 func at(column, row int) string           { return columnName(column) + strconv.Itoa(row) }
 func fixed(column, row int) string        { return "$" + columnName(column) + "$" + strconv.Itoa(row) }
 func area(column, first, last int) string { return fixed(column, first) + ":" + fixed(column, last) }
-func on(sheet, place string) string       { return sheet + "!" + place }
+func on(sheet, place string) string       { return quotedSheet(sheet) + "!" + place }
 func columnName(column int) (name string) { name, _ = excelize.ColumnNumberToName(column); return name }
+
+// quotedSheet is the name of a sheet as formulas and links write it.
+func quotedSheet(name string) string {
+	if strings.Contains(name, " ") {
+		return "'" + name + "'"
+	}
+	return name
+}
 
 // significantDigits is what a sheet keeps of a number.
 const significantDigits = 15
@@ -91,6 +99,9 @@ type grid struct {
 	frozenColumns int
 	mixed         bool // blocks with different columns follow each other
 	printColumns  int
+	printed       []rows // what is printed; all rows where there is none
+	portrait      bool
+	onePage       bool // the whole sheet on one printed page
 	limits        []limit
 	flags         []flag
 	charts        []placed
@@ -156,7 +167,7 @@ func newGrid(name, purposeText, tab string, check cell, widths ...float64) *grid
 	g := &grid{name: name, purpose: purposeText, tab: tab, widths: widths, heights: map[int]float64{}, printColumns: len(widths)}
 	g.put(1, 1, text(title, name))
 	g.put(1, 2, text(purpose, purposeText))
-	g.put(1, 3, text(link, "Read me").linkTo("'Read me'!A1"))
+	g.put(1, 3, text(link, "Read me").linkTo(on(sheetReadMe, "A1")))
 	g.put(2, 3, check)
 	g.flags = append(g.flags,
 		flag{"B3", "check_total=0", pass},

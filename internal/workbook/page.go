@@ -2,6 +2,7 @@ package workbook
 
 import (
 	"fmt"
+	"strings"
 
 	"github.com/xuri/excelize/v2"
 )
@@ -29,11 +30,17 @@ func (e *emitter) view(g *grid) error {
 	return e.file.SetSheetView(g.name, 0, &excelize.ViewOptions{ShowGridLines: &gridLines})
 }
 
-// page sets how the sheet prints: landscape, one page wide, headings repeated.
+// page sets how the sheet prints: one page wide, headings repeated.
 func (e *emitter) page(g *grid) error {
-	size, landscape, wide, tall := paperA4, "landscape", 1, 0
+	size, orientation, wide, tall := paperA4, "landscape", 1, 0
+	if g.portrait {
+		orientation = "portrait"
+	}
+	if g.onePage {
+		tall = 1
+	}
 	if err := e.file.SetPageLayout(g.name, &excelize.PageLayoutOptions{
-		Size: &size, Orientation: &landscape, FitToWidth: &wide, FitToHeight: &tall}); err != nil {
+		Size: &size, Orientation: &orientation, FitToWidth: &wide, FitToHeight: &tall}); err != nil {
 		return err
 	}
 	side, foot := marginInches, footInches
@@ -49,10 +56,16 @@ func (e *emitter) page(g *grid) error {
 
 func (e *emitter) printRange(g *grid) error {
 	sheet := "'" + g.name + "'!"
-	last := max(g.last(), g.drawnTo())
-	names := []excelize.DefinedName{{Name: "_xlnm.Print_Area",
-		RefersTo: sheet + fixed(1, 1) + ":" + fixed(g.printColumns, last), Scope: g.name}}
-	if g.frozenRows > 0 {
+	printed := g.printed
+	if len(printed) == 0 {
+		printed = []rows{{1, max(g.last(), g.drawnTo())}}
+	}
+	areas := make([]string, len(printed))
+	for i, r := range printed {
+		areas[i] = sheet + fixed(1, r.first) + ":" + fixed(g.printColumns, r.last)
+	}
+	names := []excelize.DefinedName{{Name: "_xlnm.Print_Area", RefersTo: strings.Join(areas, ","), Scope: g.name}}
+	if g.frozenRows > 0 && !g.onePage {
 		first, last := g.titles()
 		names = append(names, excelize.DefinedName{Name: "_xlnm.Print_Titles",
 			RefersTo: fmt.Sprintf("%s$%d:$%d", sheet, first, last), Scope: g.name})

@@ -22,6 +22,7 @@ func (l *layout) priceList() *grid {
 		l.priceRow(g, first+i, p, format)
 	}
 	l.priceRows = rows{first, first + len(l.prices) - 1}
+	l.changedRow(g)
 	if l.priceRows.empty() {
 		g.put(1, first, text(words, "no prices"))
 		return g
@@ -77,4 +78,25 @@ func priceMark(p costs.Price) string {
 
 func (l *layout) priceFormat() string {
 	return exactFormat(each(l.prices, func(p costs.Price) float64 { return float(p.PerUnit) }))
+}
+
+// changedRow counts the inputs and prices that differ from the run, for the
+// sheets that hold results of the run.
+func (l *layout) changedRow(g *grid) {
+	differ := func(sheet string, r rows) string {
+		if r.empty() {
+			return "0"
+		}
+		value, run := on(sheet, r.column(colValue)), on(sheet, r.column(colRun))
+		return fmt.Sprintf(`SUMPRODUCT((%s<>%s)*(%s<>""))`, value, run, run)
+	}
+	row := max(l.priceRows.last, l.priceRows.first) + 2
+	put := func(row int, name, label string, c cell) {
+		g.put(colName, row, text(plain, name))
+		g.put(colLabel, row, text(words, label))
+		g.put(colValue, row, c)
+	}
+	put(row, "", "Inputs that differ from the run", whole(differ(sheetInputs, l.inputRows), 0))
+	put(row+2, changedName, "Inputs and prices that differ from the run", whole(at(colValue, row)+"+"+differ(sheetPrices, l.priceRows), 0))
+	l.name(changedName, sheetPrices, colValue, row+2)
 }

@@ -7,11 +7,15 @@ import (
 
 // sheetPurposes names the sheets and what each is for.
 var sheetPurposes = [][2]string{
+	{sheetDecision, "one page to sign: the recommended route of each lot, why, and what would change the choice"},
 	{sheetInputs, "lots, targets and acceptance limits; what may be edited and what follows"},
 	{sheetPrices, "every price with its date, source and mark; edit to see the costs follow"},
 	{sheetSteps, "what each step does: water, time, energy, amounts, why it stops; balances"},
 	{sheetCosts, "the bill line by line, cost by head, cost per litre, ranking"},
 	{sheetCompare, "one row per route, charts, routes not offered and why, cautions"},
+	{sheetRanges, "how sure the figures are: ranges, chances, what moves them, break-evens"},
+	{sheetBuying, "what to order for a year of the recommended routes"},
+	{sheetBenchCard, "one printed side for each lot, for the route chosen on it"},
 	{sheetChecks, "what the workbook checks about itself"},
 	{sheetSources, "weak numbers and references"},
 }

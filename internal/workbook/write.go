@@ -14,14 +14,18 @@ import (
 
 // Names of the sheets, in order.
 const (
-	sheetReadMe  = "Read me"
-	sheetInputs  = "Inputs"
-	sheetPrices  = "Prices"
-	sheetSteps   = "Steps"
-	sheetCosts   = "Costs"
-	sheetCompare = "Compare"
-	sheetChecks  = "Checks"
-	sheetSources = "Sources"
+	sheetReadMe    = "Read me"
+	sheetDecision  = "Decision"
+	sheetInputs    = "Inputs"
+	sheetPrices    = "Prices"
+	sheetSteps     = "Steps"
+	sheetCosts     = "Costs"
+	sheetCompare   = "Compare"
+	sheetRanges    = "Ranges"
+	sheetBuying    = "Buying"
+	sheetBenchCard = "Bench card"
+	sheetChecks    = "Checks"
+	sheetSources   = "Sources"
 )
 
 // Colours of the tabs, one for each kind of sheet.
@@ -55,9 +59,14 @@ func Write(w io.Writer, r *study.Report) error {
 // lay lays out all sheets but the first, which names them.
 func lay(m *model) *layout {
 	l := &layout{model: m}
-	for _, sheet := range []func() *grid{l.inputs, l.priceList, l.steps, l.costs, l.compare, l.checks, l.sources} {
-		l.grids = append(l.grids, sheet())
+	add := func(sheets ...func() *grid) {
+		for _, sheet := range sheets {
+			l.grids = append(l.grids, sheet())
+		}
 	}
+	add(l.inputs, l.priceList, l.steps, l.costs, l.compare, l.ranges, l.buying, l.benchCard)
+	l.grids = append([]*grid{l.decision()}, l.grids...) // it shows what later sheets hold
+	add(l.checks, l.sources)
 	return l
 }
 
