@@ -55,7 +55,7 @@ func TestBadValues(t *testing.T) {
 		{"18 L", "1e400 L", `job.yaml:3: lots[0].batch: "1e400 L" is too large`},
 		{"18 L", "NaN", `job.yaml:3: lots[0].batch: "NaN" is not a finite number`},
 		{"18 L", ".nan L", `job.yaml:3: lots[0].batch: ".nan L" is not a finite number`},
-		{"480 mg/kg", "60 %", `job.yaml:4: lots[0].water: "60 %" is not possible here; allowed: 0 mg/kg to 500000 mg/kg`},
+		{"480 mg/kg", "60 %", `job.yaml:4: lots[0].water: "60 %" is not possible here; allowed: 0 mg/kg to 500000 mg/kg, or saturated`},
 		{"15 mg/kg", "0 mg/kg", `job.yaml:5: lots[0].target: "0 mg/kg" is not possible here; allowed: 0.01 mg/kg to 500000 mg/kg`},
 		{"15 mg/kg", "600 mg/kg\n  free water: 5 mL", `job.yaml:5: lots[0].target: "600 mg/kg" is not below the water now (480 mg/kg), yet there is free water: a lot with free water is not dry. Check both, or remove the free water`},
 		{"15 mg/kg", "15 mg/kg\n  free water: 18 L", `job.yaml:6: lots[0].free water: "18 L" is as much as the batch (18 L) or more`},

@@ -68,7 +68,7 @@ func (r *reader) amounts(n *document.Node, f document.Fields, lot *Lot) {
 func (r *reader) limitsOf(f document.Fields, lot *Lot) {
 	var okWater, okTarget bool
 	target := f.Need("target")
-	lot.Water, okWater = r.measure(f.Need("water"), quantity.WaterContent, between(0, 0.5, "0 mg/kg to 500000 mg/kg"))
+	okWater = r.water(f.Need("water"), lot)
 	lot.Target, okTarget = r.measure(target, quantity.WaterContent, between(1e-8, 0.5, "0.01 mg/kg to 500000 mg/kg"))
 	if okWater && okTarget && lot.Target >= lot.Water && lot.FreeWaterM3 > 0 {
 		target.Fail("%s is not below the water now (%s), yet there is free water: a lot with free water is not dry. Check both, or remove the free water",

@@ -123,6 +123,7 @@ type Lot struct {
 	BatchM3         float64
 	BatchesPerYear  float64
 	Water           float64 // kg/kg, dissolved water as read
+	Saturated       bool    // Water is what the solvent holds at room temperature
 	FreeWaterM3     float64
 	Target          float64 // kg/kg
 	NotBelow        float64 // kg/kg

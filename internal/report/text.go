@@ -7,6 +7,7 @@ import (
 	"unicode"
 	"unicode/utf8"
 
+	"parch/internal/job"
 	"parch/internal/quantity"
 	"parch/internal/study"
 )
@@ -65,7 +66,7 @@ func priceNote(r *study.Report) string {
 func (p *page) lot(n int, r *study.Report, l *study.Lot) {
 	p.line("")
 	p.say(0, 3, "%d. %s: %s of %s, %s a year, from %s to %s", n, l.Job.Name, quantity.FormatVolume(l.Job.BatchM3),
-		solventName(l), count(l.Job.BatchesPerYear, "batch", "batches"), quantity.FormatWater(l.Job.Water), quantity.FormatWater(l.Job.Target))
+		solventName(l), count(l.Job.BatchesPerYear, "batch", "batches"), startWater(&l.Job), quantity.FormatWater(l.Job.Target))
 	p.acceptance(l)
 	if l.NothingToDo != "" {
 		p.say(3, 0, "%s.", sentence(l.NothingToDo))
@@ -78,6 +79,18 @@ func (p *page) lot(n int, r *study.Report, l *study.Lot) {
 	p.excluded(l)
 	p.cautions(l)
 	p.notes("Warnings", p.lotWarnings(l))
+}
+
+// startWater is the water of a lot as delivered, in words.
+func startWater(lot *job.Lot) string {
+	text := quantity.FormatWater(lot.Water)
+	if lot.Saturated {
+		text = "saturated (" + text + ")"
+	}
+	if lot.FreeWaterM3 > 0 {
+		text += " with " + quantity.FormatVolume(lot.FreeWaterM3) + " of free water"
+	}
+	return text
 }
 
 func solventName(l *study.Lot) string {

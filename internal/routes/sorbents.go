@@ -11,7 +11,7 @@ import (
 )
 
 func (c *Case) runSoak(lot steps.Lot, goal float64, agent string, choice choice) (steps.Outcome, error) {
-	if err := nothingLeft(lot, goal); err != nil {
+	if err := c.fitForBeads(lot, goal); err != nil {
 		return steps.Outcome{}, err
 	}
 	o, err := steps.SoakFor(c.Mixture, lot, goal, choice.soakHours*3600, c.sorbent(agent, choice.after), c.soakRig(choice.stirred))
@@ -22,12 +22,18 @@ func (c *Case) runSoak(lot steps.Lot, goal float64, agent string, choice choice)
 	return o, err
 }
 
-// nothingLeft refuses a sieve on a lot that is at its goal already.
-func nothingLeft(lot steps.Lot, goal float64) error {
-	if lot.Water() > goal {
-		return nil
+// fitForBeads refuses a sieve on a lot that is at its goal already, and on one in
+// which water stands as a layer of its own: no isotherm goes beyond saturation,
+// and beads that liquid water wets grow hot and crack (common practice, no source).
+// What was read as dissolved is taken for dissolved.
+func (c *Case) fitForBeads(lot steps.Lot, goal float64) error {
+	switch saturated, partly, err := c.Mixture.Solubility(c.Job.Site.RoomK); {
+	case lot.Water() <= goal:
+		return refusal{fmt.Errorf("%s is at or below the %s asked for: nothing is left for a sieve", quantity.FormatWater(lot.Water()), quantity.FormatWater(goal))}
+	case err == nil && partly && lot.Water() > math.Max(leastExcess*saturated, c.Lot.Water*(1+1e-6)):
+		return refusal{fmt.Errorf("free water never goes over beads: the lot holds %s, %s dissolves %s; draw the water off first", quantity.FormatWater(lot.Water()), c.Solvent.Name, quantity.FormatWater(saturated))}
 	}
-	return refusal{fmt.Errorf("%s is at or below the %s asked for: nothing is left for a sieve", quantity.FormatWater(lot.Water()), quantity.FormatWater(goal))}
+	return nil
 }
 
 func (c *Case) soakRig(stirred bool) steps.SoakRig {
@@ -80,7 +86,7 @@ func (c *Case) unfit(a *catalog.Agent) string {
 
 // runColumn takes the narrowest column that reaches the goal, or the widest.
 func (c *Case) runColumn(lot steps.Lot, goal float64, agent string, choice choice) (steps.Outcome, error) {
-	if err := nothingLeft(lot, goal); err != nil {
+	if err := c.fitForBeads(lot, goal); err != nil {
 		return steps.Outcome{}, err
 	}
 	var o steps.Outcome

@@ -42,6 +42,9 @@ type Lot struct {
 	NothingToDo string  // why no drying is needed, or ""
 	Routes      []Route // ranked first, then those that miss, nearest first
 	Excluded    []routes.Excluded
+	BreakEvens  []BreakEven
+	Front       []FrontPoint // routes that reach the limit and have their prices
+	WhatIf      *WhatIf      // nil where there is nothing to dry
 	Warnings    []string
 }
 
