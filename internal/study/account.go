@@ -65,10 +65,11 @@ func (r *Report) buy(c *catalog.Catalog) error {
 	pieces := map[string]int{}
 	for i := range r.Lots {
 		l := &r.Lots[i]
-		if len(l.Routes) == 0 || l.Routes[0].Rank == 0 {
+		chosen := l.Best()
+		if chosen == nil {
 			continue
 		}
-		plan := l.Routes[0].plan(l.Job.Name, l.Job.BatchesPerYear)
+		plan := chosen.plan(l.Job.Name, l.Job.BatchesPerYear)
 		best = append(best, plan)
 		for item, n := range site.ToBuyEquipment(plan) {
 			pieces[item] = max(pieces[item], n)

@@ -131,8 +131,8 @@ func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog
 	if given == nil {
 		l.dropDominated()
 	}
-	if len(l.Routes) > 0 && l.Routes[0].Rank == 1 {
-		l.Routes[0].Warnings = append(l.Routes[0].Warnings, afterwards(k, &l.Routes[0])...)
+	if best := l.Best(); best != nil {
+		best.Warnings = append(best.Warnings, afterwards(k, best)...)
 	}
 	l.invest(site)
 	sort.SliceStable(l.Excluded, func(a, b int) bool { return l.Excluded[a].ID < l.Excluded[b].ID })

@@ -46,6 +46,7 @@ type Lot struct {
 	Front       []FrontPoint // routes that reach the limit and have their prices
 	WhatIf      *WhatIf      // nil where there is nothing to dry
 	Warnings    []string
+	Doubts      []Mover // of the best route, the largest first; empty without draws
 }
 
 // Route is one compared route.
@@ -59,6 +60,11 @@ type Route struct {
 	Footprint costs.Footprint
 	Cautions  []catalog.Caution
 	Warnings  []string
+
+	Range       *Range // nil without draws
+	Recommended bool   // reaches the limit, and its chance reaches the assurance of the job
+	WhyNot      string // why a route that reaches the limit is not recommended, or ""
+	Miss        *Miss  // nil where the job does not say what a failed batch costs, or no chance is known
 }
 
 // Meets reports whether the route reaches the acceptance limit.
