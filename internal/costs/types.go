@@ -1,10 +1,13 @@
 // Package costs turns usage and prices into a bill in decimal money, and into
 // what has to be bought, when, and whether equipment pays.
 //
-// One rounding rule: the quantity of a line is rounded to 12 decimals of its
-// unit when it becomes decimal, and the price of a unit of a pack to 12 decimals.
-// Amounts are exact products, heads and totals exact sums; nothing else is
-// rounded. Money is shown to the cent.
+// One rounding rule: amounts are exact products, heads and totals exact sums of
+// them, and only what is written down is rounded, once, by ToTheCent: half away
+// from zero, so that written heads add up to the written total. Routes are
+// compared, tuned and drawn by the exact amounts; rounding each line would make
+// steps of a cent where a break-even or a tuned setting needs a smooth cost. A
+// quantity becomes decimal with 12 decimals of its unit, and so does the price of
+// a unit out of a pack.
 package costs
 
 import (

@@ -97,7 +97,7 @@ func objective(objective, currency string) (aim string, value func(*study.Route)
 		if !r.Bill.Priced() {
 			return "no price"
 		}
-		return fmt.Sprintf("%s %s a litre delivered", money(r.Bill.PerLitre), currency)
+		return fmt.Sprintf("%s %s a litre delivered", money(r.Bill.WrittenPerLitre()), currency)
 	}
 }
 
@@ -154,7 +154,7 @@ func (p *page) ranking(r *study.Report, l *study.Lot) {
 		rows[i] = []string{
 			strconv.Itoa(route.Rank), brokenAtPlus(route.ID, routeColumns), mgKg(run.WaterOut), quantity.Significant(run.HoursAttended, 3),
 			quantity.Significant(run.HoursTotal, 3), quantity.Significant(run.EnergyKWh, 3), quantity.Significant(run.SolventLostL, 2),
-			marked(route, route.Bill.PerBatch), marked(route, route.Bill.PerLitre),
+			marked(route, route.Bill.PerBatch), marked(route, route.Bill.WrittenPerLitre()),
 		}
 	}
 	p.line("")

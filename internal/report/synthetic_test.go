@@ -58,6 +58,8 @@ func bill(labour, agent, perLitre string) costs.Bill {
 		ByHead:   map[steps.Head]decimal.Decimal{steps.Labour: l, steps.Agent: a},
 		PerBatch: l.Add(a),
 		PerLitre: decimal.RequireFromString(perLitre),
+
+		LitresDelivered: l.Add(a).DivRound(decimal.RequireFromString(perLitre), 12),
 	}
 }
 

@@ -197,6 +197,14 @@ lots:
 				if !heads.Equal(r.Bill.PerBatch) || !r.Bill.PerYear.Equal(r.Bill.PerBatch.Mul(decimal.NewFromFloat(l.Job.BatchesPerYear))) {
 					t.Errorf("%s, %s: heads %s, batch %s, year %s", name, r.ID, heads, r.Bill.PerBatch, r.Bill.PerYear)
 				}
+				written, total := decimal.Zero, r.Bill.PerBatch.Round(costs.Cents)
+				byHead, shown := r.Bill.Written()
+				for _, amount := range byHead {
+					written = written.Add(amount)
+				}
+				if !written.Equal(total) || !shown.Equal(total) {
+					t.Errorf("%s, %s: written heads %s, written total %s, exact %s", name, r.ID, written, shown, r.Bill.PerBatch)
+				}
 				float, err := report.Book.PerBatchFloat(r.Run.Uses, l.Job.BatchesPerYear)
 				if err != nil || math.Abs(float/r.Bill.PerBatch.InexactFloat64()-1) > 1e-9 {
 					t.Errorf("%s, %s: search %.15g, bill %s, %v", name, r.ID, float, r.Bill.PerBatch, err)

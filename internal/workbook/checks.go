@@ -154,6 +154,8 @@ func (l *layout) billTests() []test {
 		{"Amounts: quantity × price", sum("SUM(" + bill(billAmount) + ")"), sum(fmt.Sprintf("SUMPRODUCT(%s,%s)", bill(billBatch), bill(billPrice))), moneyTolerance, money},
 		{"All lines of the bills and all heads", sum("SUM(" + heads + ")"), sum("SUM(" + bill(billAmount) + ")"), moneyTolerance, money},
 		{"Routes whose heads do not add up to the cost per batch", whole(fmt.Sprintf("SUMPRODUCT((ABS(%s-%s)>%s)*1)", headSums, totals, ownTolerance), 0), none(), moneyTolerance, "routes"},
+		{"Routes whose bill to the cent is not its rounded total",
+			whole(fmt.Sprintf("SUMPRODUCT((ABS(%s-ROUND(%s,job_money_decimals))>%s)*1)", on(sheetCosts, l.writtenRows.column(headFirst+9)), totals, ownTolerance), 0), none(), moneyTolerance, "routes"},
 		{"Cost per batch on Compare and on Costs", sum("SUM(" + shown + ")"), sum("SUM(" + totals + ")"), moneyTolerance, money},
 	}
 	delivered := on(sheetCosts, l.litreRows.column(litreDelivered))

@@ -53,11 +53,12 @@ var headNames = map[steps.Head]string{
 }
 
 func (l *layout) costs() *grid {
-	g := newGrid(sheetCosts, "The bill of each route: quantity × price = amount, for one batch. Below the lines: cost by head, cost per litre, target and rank. Nothing is rounded, only shown to the cent.",
+	g := newGrid(sheetCosts, "The bill of each route: quantity × price = amount, for one batch. Below the lines: cost by head, cost per litre, target and rank. Amounts are exact and shown to a hundredth of a cent; the bill is rounded once, where it is written to the cent.",
 		tabWork, checkCell(), 26, 30, 10, 13, 12, 17, 11, 11, 11, 11, 11, 11, 11, 11, 52)
 	g.mixed, g.frozenRows, g.frozenColumns = true, frameRows, 3 // the blocks share only these columns
 	l.billBlock(g)
 	l.headBlock(g)
+	l.writtenBlock(g)
 	l.litreBlock(g)
 	l.rankBlock(g)
 	g.putRow(frameRows+1, text(link, "Cost by head").linkTo(on(sheetCosts, at(1, l.headRows.first-2))),
@@ -93,7 +94,7 @@ func (l *layout) billRow(g *grid, row int, r *routeModel, line lineModel) {
 		derived(fmt.Sprintf(`IF(%s="year",%s,1)`, at(billPer, row), l.lotName(r.lot, "batches_per_year")), line.shared).shown(formatFor(line.shared)),
 		derived(at(billQty, row)+"/"+at(billShared, row), line.perBatch).in(symbol(line.Unit)).shown(quantity),
 		derived(priceName(line.Item, line.Unit), line.price).in(l.money(line.Unit)).shown(l.priceFormat()),
-		derived(at(billBatch, row)+"*"+at(billPrice, row), line.amount).in(l.currency()).shown(moneyFormat),
+		derived(at(billBatch, row)+"*"+at(billPrice, row), line.amount).in(l.currency()).shown(exactMoney),
 		text(plain, l.money(line.Unit)), text(words, line.Basis))...)
 }
 
@@ -113,10 +114,36 @@ func (l *layout) headBlock(g *grid) {
 		for h := range steps.Heads {
 			column := headFirst + h
 			f := fmt.Sprintf("SUMIFS(%s,%s,$C%d,%s,%s$%d)", amounts, routeNos, row, heads, columnName(column), first-1)
-			g.put(column, row, derived(f, r.heads[h]).in(l.currency()).shown(moneyFormat))
+			g.put(column, row, derived(f, r.heads[h]).in(l.currency()).shown(exactMoney))
 		}
 		f := fmt.Sprintf("SUM(%s:%s)", at(headFirst, row), at(sum-1, row))
-		g.put(sum, row, derived(f, r.headSum).in(l.currency()).shown(moneyFormat))
+		g.put(sum, row, derived(f, r.headSum).in(l.currency()).shown(exactMoney))
+	}
+	l.noRoutes(g, first, len(l.routes))
+}
+
+// writtenBlock rounds the running total of the heads and shows what each adds.
+func (l *layout) writtenBlock(g *grid) {
+	columns := []column{{name: "Lot"}, {name: "Route id"}, {"Route no", "1"}}
+	for _, h := range steps.Heads {
+		columns = append(columns, column{headNames[h], "1"})
+	}
+	columns = append(columns, column{"Bill", "1"})
+	first := g.table(g.next(), "The bill of a batch, written to the cent, "+l.currency(), columns)
+	l.writtenRows = rows{first, first + len(l.routes) - 1}
+	sum := headFirst + len(steps.Heads)
+	for i, r := range l.routes {
+		row, exact := first+i, l.headRows.at(i)
+		g.putRow(row, l.routeKey(r)...)
+		for h := range steps.Heads {
+			column := headFirst + h
+			f := fmt.Sprintf("ROUND(SUM($D%d:%s),job_money_decimals)", exact, at(column, exact))
+			if h > 0 {
+				f += fmt.Sprintf("-SUM($D%d:%s)", row, at(column-1, row))
+			}
+			g.put(column, row, derived(f, r.written[h]).in(l.currency()).shown(moneyFormat))
+		}
+		g.put(sum, row, derived(fmt.Sprintf("SUM(%s:%s)", at(headFirst, row), at(sum-1, row)), r.wholeBill).in(l.currency()).shown(moneyFormat))
 	}
 	l.noRoutes(g, first, len(l.routes))
 }

@@ -7,6 +7,7 @@ import (
 
 const (
 	moneyFormat  = "#,##0.00"
+	exactMoney   = "#,##0.0000"
 	mostDecimals = 4
 )
 

@@ -5,6 +5,7 @@ import (
 	"math"
 	"strings"
 
+	"parch/internal/costs"
 	"parch/internal/quantity"
 )
 
@@ -72,6 +73,8 @@ func (l *layout) runInputs(g *grid) {
 	fact(g, "", "Assurance asked for", number(j.Assurance*100, "%").shown("0"), "%", "job file; chance of target that a recommended route needs")
 	row = fact(g, "job_tie", "Level within a share of", number(tie, "1").shown("0E+00"), "1", "closer than this there is only rounding; a route at the limit has reached it, and routes count as level: then the cost per litre, then the route id decides")
 	l.name("job_tie", sheetInputs, colValue, row)
+	row = fact(g, "job_money_decimals", "Decimals of written money", count(costs.Cents), "", "bills are written to the cent; what they are compared by is exact")
+	l.name("job_money_decimals", sheetInputs, colValue, row)
 	row = fact(g, "job_lowest_plotted", "Lowest water drawn in charts", number(lowestPlotted, "mg/kg"), "mg/kg", "the chart has a logarithmic axis, which has no zero")
 	l.name("job_lowest_plotted", sheetInputs, colValue, row)
 	notes := map[string]string{"cost": "cost per litre delivered in spec", "time": "hours in total, attended or not",

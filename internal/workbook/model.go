@@ -53,6 +53,8 @@ type routeModel struct {
 	lines     []lineModel
 	heads     []float64 // as steps.Heads
 	headSum   float64
+	written   []float64 // heads to the cent, as steps.Heads
+	wholeBill float64   // their sum
 	total     float64
 	litres    float64
 	perLitre  float64
@@ -134,6 +136,11 @@ func newRoute(no int, lot *lotModel, route study.Route, book costs.Book) (*route
 	for _, h := range r.heads {
 		r.headSum += h
 	}
+	heads, total := route.Bill.Written()
+	for _, h := range steps.Heads {
+		r.written = append(r.written, float(heads[h]))
+	}
+	r.wholeBill = float(total)
 	run := route.Run
 	r.litres = tidy(run.LitresDelivered)
 	r.perLitre = r.total / r.litres

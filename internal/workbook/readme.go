@@ -30,7 +30,7 @@ var useWords = []string{
 	"Blue cells on Inputs and Prices may be edited. Prices and batches per year are live: bills, costs per litre and ranks follow at once.",
 	"Amounts, water contents, hours and energy are values from the program. When an input that only the program can follow is edited, the sheet shows “run parch again” there and at the top of every sheet.",
 	"The state of all checks stands at the top of every sheet, in words.",
-	"Costs are positive, credits negative; water removed is positive. Money is not rounded, only shown to the cent.",
+	"Costs are positive, credits negative; water removed is positive. Money is computed exactly and rounded once: the heads of a bill, written to the cent by its running total, add up to the written total.",
 	"Water contents are mg of water per kg of solution. Litres are at the temperature of the lot.",
 	"The sheets are protected against slips, without a password.",
 }

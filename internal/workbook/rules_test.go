@@ -28,7 +28,7 @@ var (
 )
 
 var allowedFunctions = []string{"ABS", "AND", "COUNT", "COUNTIF", "COUNTIFS", "IF", "IFERROR", "INDEX", "ISERROR", "ISNA",
-	"ISNUMBER", "MATCH", "MAX", "NOT", "ROWS", "SUM", "SUMIFS", "SUMPRODUCT"}
+	"ISNUMBER", "MATCH", "MAX", "NOT", "ROUND", "ROWS", "SUM", "SUMIFS", "SUMPRODUCT"}
 
 // eachFormula calls f for every formula of the demonstration's workbook.
 func eachFormula(t *testing.T, b *book, f func(sheet, place, formula string)) {
@@ -78,6 +78,9 @@ func TestFormulasAreShortAndPlain(t *testing.T) {
 			if !slices.Contains(allowedFunctions, f[1]) {
 				t.Errorf("%s!%s: function %s is not on the list", sheet, place, f[1])
 			}
+		}
+		if strings.Contains(formula, "ROUND(") && !strings.Contains(formula, "job_money_decimals)") { // money is rounded once, nothing else is
+			t.Errorf("%s!%s: rounded: %s", sheet, place, formula)
 		}
 		if d := ifDepth(formula); d > 1 {
 			t.Errorf("%s!%s: IF within IF: %s", sheet, place, formula)
@@ -376,6 +379,7 @@ func TestCostsAreLive(t *testing.T) {
 	}{
 		{"Costs", l.lineRows, []int{billShared, billBatch, billPrice, billAmount}},
 		{"Costs", l.headRows, []int{4, 5, 6, 7, 8, 9, 10, 11, 12, 13}},
+		{"Costs", l.writtenRows, []int{4, 5, 6, 7, 8, 9, 10, 11, 12, 13}},
 		{"Costs", l.litreRows, []int{litreTotal, litreCost, litreYear}},
 		{"Costs", l.rankRows, []int{rankReaches, rankObjective, 11, 12, 13, rankPlace}},
 		{"Compare", l.compareRows, []int{3, 4, 5, 6, 7, 8, 13}},

@@ -85,6 +85,7 @@ type layout struct {
 	resultRows    rows // results of the routes
 	lineRows      rows // bill
 	headRows      rows // cost by head
+	writtenRows   rows // the same, written to the cent
 	litreRows     rows // cost per litre
 	rankRows      rows // target and rank
 	compareRows   rows
