@@ -102,11 +102,7 @@ func (s *shelf) open(fsys fs.FS) {
 		workers.Go(func() {
 			for i := range queue {
 				f := &s.files[i]
-				data, err := fs.ReadFile(fsys, f.name)
-				if err == nil {
-					f.root, err = document.Parse(f.name, data)
-				}
-				f.err = err
+				f.root, f.err = parse(fsys, f.name)
 			}
 		})
 	}

@@ -14,7 +14,10 @@ func build(document *yaml.Node, found *Problems) *Node {
 
 // add fills in n from raw.
 func add(raw *yaml.Node, n *Node, depth int) *Node {
-	n.raw = raw
+	n.line, n.kind = raw.Line, kindOf(raw)
+	if n.kind == single {
+		n.value = raw.Value
+	}
 	switch {
 	case depth > maxDepth:
 		n.Fail("nested deeper than %d levels", maxDepth)
@@ -36,15 +39,30 @@ func add(raw *yaml.Node, n *Node, depth int) *Node {
 			n.items = append(n.items, add(item, &Node{problems: n.problems, parent: n, index: i}, depth+1))
 		}
 	case yaml.MappingNode:
-		n.addEntries(depth)
+		n.addEntries(raw, depth)
 	}
 	return n
 }
 
-func (n *Node) addEntries(depth int) {
+func kindOf(raw *yaml.Node) kind {
+	switch {
+	case isNull(raw):
+		return empty
+	case raw.Kind == yaml.SequenceNode:
+		return list
+	case raw.Kind == yaml.MappingNode:
+		return keyed
+	}
+	return single
+}
+
+// isNull reports an empty value, "~" and "null".
+func isNull(raw *yaml.Node) bool { return raw.Kind == yaml.ScalarNode && raw.Tag == "!!null" }
+
+func (n *Node) addEntries(raw *yaml.Node, depth int) {
 	lines := map[string]int{}
-	for i := 0; i+1 < len(n.raw.Content); i += 2 {
-		key, value := n.raw.Content[i], n.raw.Content[i+1]
+	for i := 0; i+1 < len(raw.Content); i += 2 {
+		key, value := raw.Content[i], raw.Content[i+1]
 		if !n.keyIsPlain(key) {
 			continue
 		}

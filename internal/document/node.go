@@ -5,8 +5,16 @@ import (
 	"strconv"
 	"strings"
 	"unicode/utf8"
+)
 
-	"go.yaml.in/yaml/v3"
+// kind says what a Node is.
+type kind byte
+
+const (
+	empty kind = iota // a key without a value, "~" and "null"
+	single
+	list
+	keyed
 )
 
 // Node is a value of the document. The methods of a nil Node do nothing and
@@ -16,7 +24,9 @@ type Node struct {
 	parent   *Node
 	key      string // the key in the parent; "" in a list and at the root
 	index    int    // the place in the parent's list
-	raw      *yaml.Node
+	line     int
+	kind     kind
+	value    string  // of a single value, as typed
 	entries  []Entry // of a map, in the order of the file
 	items    []*Node // of a list
 	broken   bool    // a problem with this value is already recorded
@@ -38,7 +48,7 @@ func (n *Node) Line() int {
 	if n == nil {
 		return 0
 	}
-	return n.raw.Line
+	return n.line
 }
 
 // Path says where the value stands: "lots[0].water"; "" at the root.
@@ -75,9 +85,8 @@ func (n *Node) With(suffix string) *Node {
 	if n == nil || n.IsList() || n.IsMap() || suffix == "" {
 		return n
 	}
-	joined, raw := *n, *n.raw
-	raw.Value += suffix
-	joined.raw = &raw
+	joined := *n
+	joined.value += suffix
 	return &joined
 }
 
@@ -96,7 +105,7 @@ func (n *Node) Fail(format string, args ...any) {
 	if n == nil || n.broken {
 		return
 	}
-	n.failAt(n.raw.Line, format, args...)
+	n.failAt(n.line, format, args...)
 }
 
 func (n *Node) failAt(line int, format string, args ...any) {
@@ -107,17 +116,14 @@ func (n *Node) failAt(line int, format string, args ...any) {
 	n.problems.Add(line, "%s", text)
 }
 
-// isNull reports an empty value, "~" and "null".
-func isNull(raw *yaml.Node) bool { return raw.Kind == yaml.ScalarNode && raw.Tag == "!!null" }
-
 // IsList reports whether the value is a list.
-func (n *Node) IsList() bool { return n != nil && n.raw.Kind == yaml.SequenceNode }
+func (n *Node) IsList() bool { return n != nil && n.kind == list }
 
 // IsMap reports whether the value has keys.
-func (n *Node) IsMap() bool { return n != nil && n.raw.Kind == yaml.MappingNode }
+func (n *Node) IsMap() bool { return n != nil && n.kind == keyed }
 
 // IsEmpty reports whether there is no value: no key, or nothing after its colon.
-func (n *Node) IsEmpty() bool { return n == nil || isNull(n.raw) }
+func (n *Node) IsEmpty() bool { return n == nil || n.kind == empty }
 
 func (n *Node) what() string {
 	switch {

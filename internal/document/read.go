@@ -100,11 +100,11 @@ func (n *Node) scalar() (text string, ok bool) {
 	case n.IsList() || n.IsMap():
 		n.Fail("a single value is wanted here, this is %s", n.what())
 		return "", false
-	case isNull(n.raw) || strings.TrimSpace(n.raw.Value) == "":
+	case n.kind == empty || strings.TrimSpace(n.value) == "":
 		n.Fail("is empty")
 		return "", false
 	}
-	return strings.TrimSpace(n.raw.Value), true
+	return strings.TrimSpace(n.value), true
 }
 
 // Text reads a text, without spaces around it.

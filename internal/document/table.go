@@ -9,8 +9,6 @@ import (
 	"regexp"
 	"slices"
 	"strings"
-
-	"go.yaml.in/yaml/v3"
 )
 
 // mostRows bounds a table; a person's list is far shorter.
@@ -35,7 +33,7 @@ func Table(name string, data []byte, known, numeric []string) (*Node, error) {
 	if found.Count() > 0 {
 		return nil, found.Err()
 	}
-	t := &table{found: found, known: known, numeric: numeric, root: &Node{problems: found, raw: &yaml.Node{Kind: yaml.SequenceNode, Line: 1}}}
+	t := &table{found: found, known: known, numeric: numeric, root: &Node{problems: found, kind: list, line: 1}}
 	t.read(data)
 	if t.heads == nil {
 		return nil, found.Err()
@@ -114,7 +112,7 @@ func (t *table) headings(record []string, line int) bool {
 }
 
 func (t *table) row(record []string, line int, comma rune) {
-	row := &Node{problems: t.found, parent: t.root, place: "row", raw: &yaml.Node{Kind: yaml.MappingNode, Line: line}}
+	row := &Node{problems: t.found, parent: t.root, place: "row", kind: keyed, line: line}
 	if len(record) != len(t.heads) {
 		t.found.Add(line, "%d cells, but the headings name %d; a text that contains %q stands in quotation marks", len(record), len(t.heads), comma)
 		return
@@ -125,7 +123,7 @@ func (t *table) row(record []string, line int, comma rune) {
 			continue
 		}
 		cell := &Node{problems: t.found, parent: row, key: t.heads[i], place: fmt.Sprintf("column %q", segment(t.heads[i])),
-			raw: &yaml.Node{Kind: yaml.ScalarNode, Tag: "!!str", Value: text, Line: line}}
+			kind: single, value: text, line: line}
 		t.check(cell)
 		row.entries = append(row.entries, Entry{t.heads[i], line, cell})
 	}
@@ -142,7 +140,7 @@ var (
 
 // check refuses formulas and, in a numeric column, what may be read in two ways.
 func (t *table) check(n *Node) {
-	text := n.raw.Value
+	text := n.value
 	switch {
 	case formula.MatchString(text):
 		n.Fail("%q begins like a formula of a spreadsheet; write the value itself", shortened(text))
@@ -159,7 +157,7 @@ func (t *table) check(n *Node) {
 			shortened(plain), shortened(point), shortened(point[:at+4]), shortened(point[at+4:]))
 		n.broken = true
 	default:
-		n.raw.Value = decimalComma.ReplaceAllString(text, "$1.$2$3")
+		n.value = decimalComma.ReplaceAllString(text, "$1.$2$3")
 	}
 }
 
