@@ -14,7 +14,7 @@ func build(document *yaml.Node, found *Problems) *Node {
 
 // add fills in n from raw.
 func add(raw *yaml.Node, n *Node, depth int) *Node {
-	n.line, n.kind = raw.Line, kindOf(raw)
+	n.line, n.kind = int32(raw.Line), kindOf(raw)
 	if n.kind == single {
 		n.value = raw.Value
 	}
@@ -36,7 +36,7 @@ func add(raw *yaml.Node, n *Node, depth int) *Node {
 	switch raw.Kind {
 	case yaml.SequenceNode:
 		for i, item := range raw.Content {
-			n.items = append(n.items, add(item, &Node{problems: n.problems, parent: n, index: i}, depth+1))
+			n.inside = append(n.inside, add(item, &Node{problems: n.problems, parent: n, index: int32(i)}, depth+1))
 		}
 	case yaml.MappingNode:
 		n.addEntries(raw, depth)
@@ -72,8 +72,8 @@ func (n *Node) addEntries(raw *yaml.Node, depth int) {
 			continue
 		}
 		lines[name] = key.Line
-		child := add(value, &Node{problems: n.problems, parent: n, key: name}, depth+1)
-		n.entries = append(n.entries, Entry{Key: name, Line: key.Line, Node: child})
+		child := &Node{problems: n.problems, parent: n, key: name, keyLine: int32(key.Line)}
+		n.inside = append(n.inside, add(value, child, depth+1))
 	}
 }
 

@@ -17,20 +17,29 @@ const (
 	keyed
 )
 
+// place says what stands for the path of a node.
+type place byte
+
+const (
+	inTree place = iota // keys and places in lists
+	isRow               // nothing: the line says it
+	isCell              // the heading of its column
+)
+
 // Node is a value of the document. The methods of a nil Node do nothing and
 // return zero values, so that a missing key can be read like any other.
 type Node struct {
 	problems *Problems
 	parent   *Node
-	key      string // the key in the parent; "" in a list and at the root
-	index    int    // the place in the parent's list
-	line     int
-	kind     kind
+	key      string  // the key in the parent; "" in a list and at the root
 	value    string  // of a single value, as typed
-	entries  []Entry // of a map, in the order of the file
-	items    []*Node // of a list
-	broken   bool    // a problem with this value is already recorded
-	place    string  // of a table: what stands for the path, "" in a document
+	inside   []*Node // of a list or of a set of keys, in the order of the file
+	line     int32
+	keyLine  int32 // of the key in the parent
+	index    int32 // the place in the parent's list
+	kind     kind
+	place    place
+	broken   bool // a problem with this value is already recorded
 }
 
 // Entry is a key and its value.
@@ -48,7 +57,7 @@ func (n *Node) Line() int {
 	if n == nil {
 		return 0
 	}
-	return n.line
+	return int(n.line)
 }
 
 // Path says where the value stands: "lots[0].water"; "" at the root.
@@ -58,12 +67,12 @@ func (n *Node) Path() string {
 	}
 	before := n.parent.Path()
 	switch {
-	case n.place == "row":
-		return "" // the line says it
-	case n.place != "":
-		return n.place
+	case n.place == isRow:
+		return ""
+	case n.place == isCell:
+		return fmt.Sprintf("column %q", segment(n.key))
 	case n.key == "":
-		return before + "[" + strconv.Itoa(n.index) + "]"
+		return before + "[" + strconv.Itoa(int(n.index)) + "]"
 	case before == "":
 		return segment(n.key)
 	}
@@ -105,7 +114,7 @@ func (n *Node) Fail(format string, args ...any) {
 	if n == nil || n.broken {
 		return
 	}
-	n.failAt(n.line, format, args...)
+	n.failAt(n.Line(), format, args...)
 }
 
 func (n *Node) failAt(line int, format string, args ...any) {

@@ -16,11 +16,8 @@ func (n *Node) Pack(to []byte) []byte {
 
 func (n *Node) count() int {
 	count := 1
-	for _, e := range n.entries {
-		count += e.Node.count()
-	}
-	for _, item := range n.items {
-		count += item.count()
+	for _, value := range n.inside {
+		count += value.count()
 	}
 	return count
 }
@@ -30,17 +27,14 @@ func (n *Node) pack(to []byte) []byte {
 	switch n.kind {
 	case single:
 		to = packText(to, n.value)
-	case list:
-		to = binary.AppendUvarint(to, uint64(len(n.items)))
-		for _, item := range n.items {
-			to = item.pack(to)
+	case list, keyed:
+		to = binary.AppendUvarint(to, uint64(len(n.inside)))
+	}
+	for _, value := range n.inside {
+		if n.kind == keyed {
+			to = binary.AppendUvarint(packText(to, value.key), uint64(value.keyLine))
 		}
-	case keyed:
-		to = binary.AppendUvarint(to, uint64(len(n.entries)))
-		for _, e := range n.entries {
-			to = binary.AppendUvarint(packText(to, e.Key), uint64(e.Line))
-			to = e.Node.pack(to)
-		}
+		to = value.pack(to)
 	}
 	return to
 }
@@ -54,7 +48,7 @@ func packText(to []byte, text string) []byte {
 func Unpack(name, packed string) (*Node, error) {
 	u := &unpacker{rest: packed, found: &Problems{file: name}}
 	u.nodes = make([]Node, u.length())
-	root := u.node(nil, "", 0)
+	root := u.node(nil)
 	if u.broken || u.rest != "" {
 		return nil, errors.New(name + ": this is not a packed document")
 	}
@@ -68,31 +62,34 @@ type unpacker struct {
 	broken bool
 }
 
-// node reads the next node, which stands in parent under the key or at the index.
-func (u *unpacker) node(parent *Node, key string, index int) *Node {
+// node reads the next node, what is inside it included.
+func (u *unpacker) node(parent *Node) *Node {
 	if u.broken = u.broken || u.rest == "" || len(u.nodes) == 0; u.broken {
 		return nil
 	}
 	n := &u.nodes[0]
 	u.nodes = u.nodes[1:]
-	n.problems, n.parent, n.key, n.index = u.found, parent, key, index
+	n.problems, n.parent = u.found, parent
 	n.kind = kind(u.rest[0])
 	u.rest = u.rest[1:]
-	n.line = u.number()
+	n.line = int32(u.number())
 	switch n.kind {
 	case single:
 		n.value = u.text()
-	case list:
-		n.items = make([]*Node, u.length())
-		for i := range n.items {
-			n.items[i] = u.node(n, "", i)
+	case list, keyed:
+		n.inside = make([]*Node, u.length())
+	}
+	for i := range n.inside {
+		key, line := "", 0
+		if n.kind == keyed {
+			key, line = u.text(), u.number()
 		}
-	case keyed:
-		n.entries = make([]Entry, u.length())
-		for i := range n.entries {
-			key, line := u.text(), u.number()
-			n.entries[i] = Entry{key, line, u.node(n, key, 0)}
+		value := u.node(n)
+		if value == nil {
+			return n
 		}
+		value.key, value.keyLine, value.index = key, int32(line), int32(i)
+		n.inside[i] = value
 	}
 	return n
 }

@@ -53,11 +53,8 @@ func TestPackedIsTheSame(t *testing.T) {
 // everything that a reader can ask of the nodes of a tree.
 func everything(n *Node) []string {
 	all := []string{n.Where(), n.what(), n.value, n.key}
-	for _, e := range n.entries {
-		all = append(append(all, e.Key, n.problems.where(e.Line)), everything(e.Node)...)
-	}
-	for _, item := range n.items {
-		all = append(all, everything(item)...)
+	for _, value := range n.inside {
+		all = append(append(all, n.problems.where(int(value.keyLine))), everything(value)...)
 	}
 	return all
 }

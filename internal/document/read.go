@@ -12,14 +12,14 @@ import (
 // Fields are the values of a map by key. A key that is not there gives a nil Node.
 type Fields struct {
 	node  *Node
-	known []Entry // few enough that a search is quicker than a map
+	known []*Node // few enough that a search is quicker than a map
 }
 
 // Get returns the value of a key, nil where it is not there.
 func (f Fields) Get(key string) *Node {
-	for _, e := range f.known {
-		if e.Key == key {
-			return e.Node
+	for _, n := range f.known {
+		if n.key == key {
+			return n
 		}
 	}
 	return nil
@@ -41,44 +41,59 @@ func (f Fields) Need(key string) *Node {
 
 // Map reads a set of keys. Others than the allowed ones are problems.
 func (n *Node) Map(allowed ...string) Fields {
-	entries := n.Entries()
-	fields := Fields{node: n, known: make([]Entry, 0, len(entries))}
-	for _, e := range entries {
-		if slices.Contains(allowed, e.Key) {
-			fields.known = append(fields.known, e)
+	fields := Fields{node: n}
+	if !n.holds(keyed) {
+		return fields
+	}
+	fields.known = make([]*Node, 0, len(n.inside))
+	for _, value := range n.inside {
+		if slices.Contains(allowed, value.key) {
+			fields.known = append(fields.known, value)
 			continue
 		}
-		offer := n.Offer(e.Key, allowed)
+		offer := n.Offer(value.key, allowed)
 		if offer == "" && len(allowed) <= 12 {
 			offer = "; allowed: " + strings.Join(allowed, ", ")
 		}
-		n.failAt(e.Line, "unknown key %q%s", segment(e.Key), offer)
+		n.failAt(int(value.keyLine), "unknown key %q%s", segment(value.key), offer)
 	}
 	return fields
 }
 
 // Entries reads a set of keys of any name, in the order of the file.
 func (n *Node) Entries() []Entry {
-	if n == nil || n.broken {
+	if !n.holds(keyed) {
 		return nil
 	}
-	if !n.IsMap() {
-		n.Fail("keys with values are wanted here, this is %s", n.what())
-		return nil
+	entries := make([]Entry, len(n.inside))
+	for i, value := range n.inside {
+		entries[i] = Entry{value.key, int(value.keyLine), value}
 	}
-	return n.entries
+	return entries
 }
 
 // Items reads a list.
 func (n *Node) Items() []*Node {
-	if n == nil || n.broken {
+	if !n.holds(list) {
 		return nil
 	}
-	if !n.IsList() {
+	return n.inside
+}
+
+// holds reports whether the value is of a kind that holds others, and records a
+// problem where it is not.
+func (n *Node) holds(wanted kind) bool {
+	switch {
+	case n == nil || n.broken:
+		return false
+	case n.kind == wanted:
+		return true
+	case wanted == list:
 		n.Fail("a list is wanted here, this is %s", n.what())
-		return nil
+	default:
+		n.Fail("keys with values are wanted here, this is %s", n.what())
 	}
-	return n.items
+	return false
 }
 
 // Texts reads a list of texts.

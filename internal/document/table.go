@@ -4,7 +4,6 @@ import (
 	"bytes"
 	"encoding/csv"
 	"errors"
-	"fmt"
 	"io"
 	"regexp"
 	"slices"
@@ -72,7 +71,7 @@ func (t *table) read(data []byte) {
 			if !t.headings(record, line) {
 				return
 			}
-		case len(t.root.items) == mostRows:
+		case len(t.root.inside) == mostRows:
 			t.found.Add(line, "more than %d rows", mostRows)
 			return
 		case strings.TrimSpace(strings.Join(record, "")) != "":
@@ -112,7 +111,7 @@ func (t *table) headings(record []string, line int) bool {
 }
 
 func (t *table) row(record []string, line int, comma rune) {
-	row := &Node{problems: t.found, parent: t.root, place: "row", kind: keyed, line: line}
+	row := &Node{problems: t.found, parent: t.root, place: isRow, kind: keyed, line: int32(line)}
 	if len(record) != len(t.heads) {
 		t.found.Add(line, "%d cells, but the headings name %d; a text that contains %q stands in quotation marks", len(record), len(t.heads), comma)
 		return
@@ -122,12 +121,11 @@ func (t *table) row(record []string, line int, comma rune) {
 		if text == "" {
 			continue
 		}
-		cell := &Node{problems: t.found, parent: row, key: t.heads[i], place: fmt.Sprintf("column %q", segment(t.heads[i])),
-			kind: single, value: text, line: line}
+		cell := &Node{problems: t.found, parent: row, key: t.heads[i], place: isCell, kind: single, value: text, line: row.line, keyLine: row.line}
 		t.check(cell)
-		row.entries = append(row.entries, Entry{t.heads[i], line, cell})
+		row.inside = append(row.inside, cell)
 	}
-	t.root.items = append(t.root.items, row)
+	t.root.inside = append(t.root.inside, row)
 }
 
 var (
