@@ -7,13 +7,9 @@ package cli
 
 import (
 	"context"
-	"fmt"
 	"io"
 
 	"github.com/urfave/cli/v2"
-
-	"parch/catalog"
-	"parch/internal/study"
 )
 
 // program holds the streams that the commands use.
@@ -45,11 +41,12 @@ func (p *program) app() *cli.App {
 		Reader:                    p.stdin,
 		Writer:                    p.stdout,
 		ErrWriter:                 p.stderr,
-		Flags:                     []cli.Flag{onOff("version", "print the version and the date of the catalog")},
-		Commands:                  []*cli.Command{p.compare(), p.check(), p.template(), p.step(), p.inspect(), p.catalog(), p.proof(), p.schema()},
-		Action:                    p.noCommand,
-		OnUsageError:              func(_ *cli.Context, err error, _ bool) error { return flagFailure(err, nil) },
-		ExitErrHandler:            func(*cli.Context, error) {},
+		Flags:                     []cli.Flag{onOff("version", "print the version, the commit it was built from and the date of the catalog")},
+		Commands: []*cli.Command{p.compare(), p.check(), p.template(), p.step(), p.inspect(), p.catalog(), p.proof(), p.schema(),
+			p.completion(), p.manual()},
+		Action:         p.noCommand,
+		OnUsageError:   func(_ *cli.Context, err error, _ bool) error { return flagFailure(err, nil) },
+		ExitErrHandler: func(*cli.Context, error) {},
 	}
 }
 
@@ -72,12 +69,7 @@ func (p *program) noCommand(c *cli.Context) error {
 		return unknownCommand(c.App, c.Args().First())
 	}
 	if c.Bool("version") {
-		cat, err := catalog.Load()
-		if err != nil {
-			return failed(err)
-		}
-		_, err = fmt.Fprintf(p.stdout, "parch %s, catalog of %s\n", study.Version, cat.Date)
-		return failed(err)
+		return failed(p.printVersion())
 	}
 	return misused("no command given", "parch --help lists the commands")
 }
