@@ -1,8 +1,8 @@
 #!/usr/bin/env bash
 # Builds parch for all systems it is given out for, the same bytes from the same commit wherever it
-# is run with the same Go. Use: cmd/release.sh [FOLDER], by default ./release. Prints the checksums.
+# is run with the same Go. Use: cmd/release.sh [FOLDER], by default ./dist. Prints the checksums.
 set -euo pipefail
-into=$(realpath -m "${1:-release}")
+into=$(realpath -m "${1:-dist}")
 cd "$(dirname "$0")/.."
 mkdir -p "$into"
 
