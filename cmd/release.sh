@@ -12,4 +12,8 @@ for system in linux/amd64 linux/arm64 darwin/amd64 darwin/arm64 windows/amd64 wi
 	[ "$os" != windows ] || name=$name.exe
 	CGO_ENABLED=0 GOOS=$os GOARCH=$arch GOFLAGS=-mod=readonly go build -trimpath -ldflags '-s -w -buildid=' -o "$into/$name" ./cmd/parch
 done
-cd "$into" && sha256sum parch-*
+go list -deps -f '{{with .Module}}{{if not .Main}}{{.Path}} {{.Version}} {{.Dir}}{{end}}{{end}}' ./cmd/parch | sort -u | while read -r module version folder; do
+	printf '\n== %s %s\n' "$module" "$version"
+	cat "$folder"/[Ll][Ii][Cc][Ee][Nn][SsCc][Ee]*
+done | cat LICENSE - >"$into/licences.txt"
+cd "$into" && sha256sum parch-* licences.txt
