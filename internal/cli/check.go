@@ -72,7 +72,7 @@ func (p *program) runNew(c *cli.Context) error {
 		_, err = p.stdout.Write(data)
 		return failed(err)
 	}
-	if err := write(output, data); err != nil {
+	if err := p.disk.write(output, data); err != nil {
 		return failed(err)
 	}
 	_, err = fmt.Fprintf(p.stderr, "%s written; fill it in, then: parch check %s\n", output, output)

@@ -16,12 +16,13 @@ import (
 type program struct {
 	stdin          io.Reader
 	stdout, stderr io.Writer
+	disk           disk
 }
 
 // Run carries out one command line, without the name of the program in args, and
 // returns the exit status.
 func Run(ctx context.Context, args []string, stdin io.Reader, stdout, stderr io.Writer) int {
-	p := &program{stdin: stdin, stdout: stdout, stderr: stderr}
+	p := &program{stdin: stdin, stdout: stdout, stderr: stderr, disk: realDisk}
 	app := p.app()
 	args, err := flagsFirst(app, args)
 	if err == nil {

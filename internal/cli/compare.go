@@ -172,28 +172,28 @@ func (p *program) deliver(ctx context.Context, q request, r *study.Report) error
 	err = errors.Join(err, workbook.Write(&book, r.Priced()), report.JSON(&doc, r))
 	opts := report.Options{}
 	if err == nil {
-		opts, err = q.writeFiles(ctx, book.Bytes(), doc.Bytes(), tables)
+		opts, err = q.writeFiles(ctx, p.disk, book.Bytes(), doc.Bytes(), tables)
 	}
 	opts.All = q.all
 	return errors.Join(failed(err), failed(p.print(q, r, opts, doc.Bytes())), unreached(r))
 }
 
-func (q *request) writeFiles(ctx context.Context, book, doc []byte, tables []report.Table) (opts report.Options, err error) {
+func (q *request) writeFiles(ctx context.Context, d disk, book, doc []byte, tables []report.Table) (opts report.Options, err error) {
 	if err := ctx.Err(); err != nil {
 		return opts, err
 	}
-	if err := write(q.workbook, book); err != nil {
+	if err := d.write(q.workbook, book); err != nil {
 		return opts, err
 	}
 	opts.Workbook = q.workbook
 	if q.json != "" && q.json != "-" {
-		if err := write(q.json, doc); err != nil {
+		if err := d.write(q.json, doc); err != nil {
 			return opts, err
 		}
 		opts.JSON = q.json
 	}
 	if q.csv != "" {
-		if err := writeTables(q.csv, tables); err != nil {
+		if err := d.writeTables(q.csv, tables); err != nil {
 			return opts, err
 		}
 		opts.CSV = q.csv

@@ -7,8 +7,6 @@ import (
 	"io/fs"
 	"os"
 	"path/filepath"
-
-	"github.com/natefinch/atomic"
 )
 
 // maxInputBytes is read of an input file at most; the reader of the file refuses
@@ -55,40 +53,11 @@ func free(path string, force bool, hint string) error {
 	return nil
 }
 
-// write puts data into a file that appears whole or not at all.
-func write(path string, data []byte) error {
-	part := filepath.Join(filepath.Dir(path), fmt.Sprintf(".parch-%d-%s.part", os.Getpid(), filepath.Ext(path)))
-	err := fill(part, data)
-	if err == nil {
-		err = atomic.ReplaceFile(part, path)
-	}
-	if err != nil {
-		return errors.Join(fmt.Errorf("cannot write %s: %s", path, cause(err)), removed(part))
-	}
-	return nil
-}
-
-func fill(path string, data []byte) error {
-	f, err := os.OpenFile(path, os.O_WRONLY|os.O_CREATE|os.O_EXCL, 0o644)
-	if err != nil {
-		return err
-	}
-	_, err = f.Write(data)
-	return errors.Join(err, f.Sync(), f.Close())
-}
-
 // sameFile reports whether two paths name one file, however they are spelled.
 func sameFile(a, b string) bool {
 	one, errA := filepath.Abs(a)
 	other, errB := filepath.Abs(b)
 	return errA == nil && errB == nil && one == other
-}
-
-func removed(path string) error {
-	if err := os.Remove(path); err != nil && !errors.Is(err, fs.ErrNotExist) {
-		return err
-	}
-	return nil
 }
 
 // cause is what went wrong without the name of the file, which the message has.

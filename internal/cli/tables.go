@@ -55,13 +55,13 @@ func (q *request) tablesFree() error {
 	return errors.Join(problems...)
 }
 
-func writeTables(dir string, tables []report.Table) error {
-	if err := os.MkdirAll(dir, 0o755); err != nil {
+func (d disk) writeTables(dir string, tables []report.Table) error {
+	if err := d.makeDir(dir); err != nil {
 		return fmt.Errorf("cannot write into %s: %s", dir, cause(err))
 	}
 	var problems []error
 	for _, t := range tables {
-		problems = append(problems, write(filepath.Join(dir, t.Name), t.Data))
+		problems = append(problems, d.write(filepath.Join(dir, t.Name), t.Data))
 	}
 	return errors.Join(problems...)
 }
