@@ -8,8 +8,8 @@ import (
 	"parch/catalog"
 )
 
-// Toluene holds 0.0543 % of water at 25 °C and less when cooler (Solubility Data Series
-// 37 (1989), as in the catalog's checks; the room here is 25 °C).
+// Toluene holds 0.0543 % of water at 25 °C (Polak & Lu, Can. J. Chem. 51 (1973) 4018).
+
 func TestSaturatedIsWhatTheSolventHolds(t *testing.T) {
 	c, err := catalog.Load()
 	if err != nil {
