@@ -33,9 +33,8 @@ func (c *Case) account(place int, o steps.Outcome, choice choice) []StageUse {
 	switch o.Kind {
 	case steps.Trap:
 		still, _ := c.Still()
-		receiver, _ := c.receiver()
 		uses = append(uses, c.wear(place, still, 1)...)
-		uses = append(uses, c.wear(place, receiver, 1)...)
+		uses = append(uses, c.wear(place, c.Catalog.Apparatus[o.Apparatus], 1)...)
 	case steps.Forerun:
 		still, _ := c.Still()
 		uses = append(uses, c.wear(place, still, 1)...)
@@ -185,7 +184,7 @@ func (c *Case) wholeRoute(run *Run) []StageUse {
 func (c *Case) tests(r Route) float64 {
 	n := 1.0
 	for _, s := range r[:len(r)-1] {
-		if s.Kind == steps.Trap || s.Kind == steps.Forerun {
+		if chosenOutlet(s.Kind) {
 			n++
 		}
 	}

@@ -3,9 +3,11 @@ package routes
 import (
 	"fmt"
 	"math"
+	"slices"
 	"sort"
 
 	"parch/catalog"
+	"parch/internal/steps"
 )
 
 // pieces returns the apparatus of one kind, owned ones first, then by key.
@@ -35,26 +37,65 @@ func (c *Case) owned(item string) bool {
 	return false
 }
 
-// receiver is the first that returns the right layer; one made for that layer
-// goes before one that is assembled for either.
-func (c *Case) receiver() (*catalog.Apparatus, error) {
-	want := string(c.Trap.Floor.Return)
-	var either *catalog.Apparatus
+// receivers that return the layer of a trap, the owned ones first; ones made for
+// that layer go before those for either.
+func (c *Case) receivers(trap *steps.TrapEquilibrium) (all []*catalog.Apparatus) {
+	want := string(trap.Floor.Return)
 	for _, a := range c.pieces("receiver") {
-		switch {
-		case a.Returns == want:
-			if either != nil && c.owned(either.Key) && !c.owned(a.Key) {
-				return either, nil
-			}
-			return a, nil
-		case a.Returns == "either" && either == nil:
-			either = a
+		if a.Returns == want || a.Returns == "either" {
+			all = append(all, a)
 		}
 	}
-	if either != nil {
-		return either, nil
+	slices.SortStableFunc(all, func(a, b *catalog.Apparatus) int {
+		if c.owned(a.Key) != c.owned(b.Key) || (a.Returns == want) == (b.Returns == want) {
+			return 0
+		}
+		if a.Returns == want {
+			return -1
+		}
+		return 1
+	})
+	return all
+}
+
+// receiver is the named one, or the first that fits.
+func (c *Case) receiver(trap *steps.TrapEquilibrium, key string) (*catalog.Apparatus, error) {
+	all := c.receivers(trap)
+	for _, a := range all {
+		if key == "" || a.Key == key {
+			return a, nil
+		}
 	}
-	return nil, fmt.Errorf("no receiver returns the %s layer", want)
+	if key != "" {
+		return nil, fmt.Errorf("%w: receiver %q does not return the %s layer", ErrSettings, key, trap.Floor.Return)
+	}
+	return nil, fmt.Errorf("no receiver returns the %s layer", trap.Floor.Return)
+}
+
+// Receivers are the keys of the receivers that a trap on this lot may have. What
+// is owned is used before another is bought.
+func (c *Case) Receivers() (keys []string) {
+	if c.Trap == nil {
+		return nil
+	}
+	all := c.receivers(c.Trap)
+	for _, a := range all {
+		if c.owned(a.Key) || !c.owned(all[0].Key) {
+			keys = append(keys, a.Key)
+		}
+	}
+	return keys
+}
+
+// ReceiverTemperatures (°C) are from the coldest in reach up to the room: a colder
+// one leaves less water, a warmer one has less to reheat.
+func (c *Case) ReceiverTemperatures() (all []float64) {
+	const apart = 5
+	room := c.Job.Site.RoomK - zeroCelsiusK
+	for t := c.Job.Site.ReceiverK - zeroCelsiusK; t <= room+1e-9 || len(all) == 0; t += apart {
+		all = append(all, math.Round(t*100)/100)
+	}
+	return all
 }
 
 // Still is the smallest that takes the batch in one charge, or the largest.

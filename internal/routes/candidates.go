@@ -123,7 +123,7 @@ func (c *Case) refuseTrap() (reason, source string) {
 	if c.Trap == nil {
 		return c.NoTrap.Error(), c.Solvent.Water.Source
 	}
-	if _, err := c.receiver(); err != nil {
+	if _, err := c.receiver(c.Trap, ""); err != nil {
 		return err.Error(), "equipment"
 	}
 	return "", ""
@@ -151,7 +151,7 @@ func (c *Case) refuseHeating() (reason, source string) {
 const leastExcess = 1.02
 
 func (c *Case) refuseSettle() (reason, source string) {
-	saturated, ok, err := c.Mixture.Solubility(c.Job.Site.RoomK)
+	saturated, ok, err := c.saturated.water, c.saturated.partly, c.saturated.err
 	switch {
 	case err != nil:
 		return err.Error(), c.Solvent.Water.Source

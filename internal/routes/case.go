@@ -2,6 +2,7 @@ package routes
 
 import (
 	"fmt"
+	"maps"
 	"math"
 
 	"parch/catalog"
@@ -22,10 +23,19 @@ type Case struct {
 	Feed    steps.Lot // dissolved and free water together, at room temperature
 	Limit   assay.Limit
 	Assay   assay.Method
-	Trap    *steps.TrapEquilibrium // nil where no trap works
+	Trap    *steps.TrapEquilibrium // at the coldest receiver in reach; nil where no trap works
 	NoTrap  error                  // why
 
-	known map[stepKey]result
+	saturated solubility
+	traps     map[float64]*steps.TrapEquilibrium // by receiver temperature
+	known     map[stepKey]result
+}
+
+// solubility of water at room temperature.
+type solubility struct {
+	water  float64 // kg/kg
+	partly bool    // there is a second layer at all
+	err    error
 }
 
 // NewCase prepares a lot.
@@ -38,12 +48,20 @@ func NewCase(j *job.Job, lot job.Lot, c *catalog.Catalog) (*Case, error) {
 	k := c.Assays[j.Site.KarlFischer]
 	method := assay.Method{Name: k.Key, Repeatability: k.Repeatability.SI, DetectionLimit: k.DetectionLimit.SI, Injections: k.Injections}
 	trap, noTrap := steps.NewTrapEquilibrium(m, j.Site.ReceiverK, j.Site.PressurePa)
-	return &Case{
-		Job: j, Lot: lot, Catalog: c, Solvent: solvent, Mixture: m,
-		Feed:  feed(m, lot, j.Site.RoomK),
-		Limit: assay.Accept(lot.Target, method), Assay: method, Trap: trap, NoTrap: noTrap,
-		known: map[stepKey]result{},
-	}, nil
+	var s solubility
+	s.water, s.partly, s.err = m.Solubility(j.Site.RoomK)
+	return (&Case{
+		Job: j, Catalog: c, Solvent: solvent, Mixture: m, Assay: method, Trap: trap, NoTrap: noTrap,
+		saturated: s, traps: map[float64]*steps.TrapEquilibrium{j.Site.ReceiverK: trap},
+	}).With(lot), nil
+}
+
+// With is the case of another lot of the same solvent at the same site.
+func (c *Case) With(lot job.Lot) *Case {
+	k := *c
+	k.Lot, k.Feed, k.Limit = lot, feed(c.Mixture, lot, c.Job.Site.RoomK), assay.Accept(lot.Target, c.Assay)
+	k.traps, k.known = maps.Clone(c.traps), map[stepKey]result{}
+	return &k
 }
 
 // feed is the lot as delivered. The batch volume is the solvent with its

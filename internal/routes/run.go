@@ -4,7 +4,9 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"slices"
 
+	"parch/internal/quantity"
 	"parch/internal/steps"
 )
 
@@ -56,7 +58,7 @@ func (c *Case) step(stage Stage, lot steps.Lot, goal float64, last bool, choice 
 	case steps.Settle:
 		return steps.RunSettle(c.Mixture, lot, c.Job.Site.RoomK, c.settleRules())
 	case steps.Trap:
-		return c.boilOut(lot, goal, choice.goesOn)
+		return c.boilOut(lot, goal, choice)
 	case steps.Forerun:
 		return c.runForerun(lot, goal, choice)
 	case steps.Salt:
@@ -95,11 +97,17 @@ func refused(err error) error {
 // reached one of a step that has none.
 func (c *Case) keptHandOver(r Route, s Settings, reached []float64) []float64 {
 	for i := range reached {
-		if r[i].Kind == steps.Trap || r[i].Kind == steps.Forerun {
+		if chosenOutlet(r[i].Kind) {
 			reached[i] = s.HandOverMgPerKg[i]
 		}
 	}
 	return reached
+}
+
+// chosenOutlet tells the steps that are run to a water that is chosen from those
+// that leave what they leave.
+func chosenOutlet(kind steps.Kind) bool {
+	return slices.Contains([]steps.Kind{steps.Trap, steps.Forerun, steps.Soak, steps.Column}, kind)
 }
 
 // finish adds what belongs to the whole route and sums up.
@@ -184,11 +192,12 @@ type result struct {
 }
 
 // boilOut runs the trap; a pot that goes on to a forerun is not cooled down.
-func (c *Case) boilOut(lot steps.Lot, goal float64, goesOn bool) (steps.Outcome, error) {
-	if c.Trap == nil {
-		return steps.Outcome{}, c.NoTrap
+func (c *Case) boilOut(lot steps.Lot, goal float64, choice choice) (steps.Outcome, error) {
+	trap, err := c.trapAt(choice.receiverC)
+	if err != nil {
+		return steps.Outcome{}, err
 	}
-	receiver, err := c.receiver()
+	receiver, err := c.receiver(trap, choice.receiver)
 	if err != nil {
 		return steps.Outcome{}, err
 	}
@@ -197,19 +206,46 @@ func (c *Case) boilOut(lot steps.Lot, goal float64, goesOn bool) (steps.Outcome,
 	if receiver.SetUp != nil {
 		rules.SetUpS += receiver.SetUp.SI
 	}
-	if goesOn {
+	if choice.goesOn {
 		rules.ShutDownS = 0
 	}
-	o, err := steps.RunTrap(c.Trap, lot, goal, steps.TrapRig{
+	o, err := steps.RunTrap(trap, lot, goal, steps.TrapRig{
 		HeaterW: c.heaterW(still), HeatShare: c.practice("heat-share"), Returns: receiver.Returns,
 		FillVolumeM3: receiver.FillVolume.SI, UsableVolumeM3: receiver.Volume.SI,
 		RoomK: c.Job.Site.RoomK, Charges: charges,
 	}, rules)
-	if err == nil && goesOn {
+	if err == nil && choice.goesOn {
 		o.Out.TempK = o.Course[len(o.Course)-1].PotK
 	}
+	o.Apparatus = receiver.Key
 	return o, err
 }
+
+// trapAt is the equilibrium of a trap with its receiver at a temperature (°C; 0
+// stands for the coldest in reach).
+func (c *Case) trapAt(receiverC float64) (*steps.TrapEquilibrium, error) {
+	const shown = 0.006 // K: settings carry two decimals
+	tK, coldest := receiverC+zeroCelsiusK, c.Job.Site.ReceiverK
+	if receiverC == 0 || math.Abs(tK-coldest) < shown {
+		tK = coldest
+	}
+	if tK < coldest {
+		return nil, fmt.Errorf("%w: a receiver at %s; the site reaches %s", ErrSettings, quantity.FormatTemperature(tK), quantity.FormatTemperature(coldest))
+	}
+	if tK == coldest && c.Trap == nil {
+		return nil, c.NoTrap
+	}
+	if known := c.traps[tK]; known != nil {
+		return known, nil
+	}
+	trap, err := steps.NewTrapEquilibrium(c.Mixture, tK, c.Job.Site.PressurePa)
+	if err == nil {
+		c.traps[tK] = trap
+	}
+	return trap, err
+}
+
+const zeroCelsiusK = 273.15
 
 // dryGrade is the water a dry grade is sold with, the job's own before the catalog's.
 func (c *Case) dryGrade() float64 {

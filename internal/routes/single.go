@@ -55,7 +55,7 @@ func (c *Case) Single(a Asked) (Single, error) {
 		s.Outcome, err = steps.RunSettle(c.Mixture, c.Feed, c.Job.Site.RoomK, c.settleRules())
 		c.bandOfSolubility(&s, func(factor float64) float64 { return s.Out.Water() * factor })
 	case steps.Trap:
-		s.Outcome, err = c.boilOut(c.Feed, orZero(a.Goal), false)
+		s.Outcome, err = c.boilOut(c.Feed, orZero(a.Goal), choice{})
 		c.bandOfSolubility(&s, func(factor float64) float64 { return c.trapOutlet(orZero(a.Goal), factor) })
 	case steps.Soak:
 		err = c.singleSoak(a, &s)

@@ -27,13 +27,21 @@ func (c *Case) runSoak(lot steps.Lot, goal float64, agent string, choice choice)
 // and beads that liquid water wets grow hot and crack (common practice, no source).
 // What was read as dissolved is taken for dissolved.
 func (c *Case) fitForBeads(lot steps.Lot, goal float64) error {
-	switch saturated, partly, err := c.Mixture.Solubility(c.Job.Site.RoomK); {
+	switch {
 	case lot.Water() <= goal:
 		return refusal{fmt.Errorf("%s is at or below the %s asked for: nothing is left for a sieve", quantity.FormatWater(lot.Water()), quantity.FormatWater(goal))}
-	case err == nil && partly && lot.Water() > math.Max(leastExcess*saturated, c.Lot.Water*(1+1e-6)):
-		return refusal{fmt.Errorf("free water never goes over beads: the lot holds %s, %s dissolves %s; draw the water off first", quantity.FormatWater(lot.Water()), c.Solvent.Name, quantity.FormatWater(saturated))}
+	case lot.Water() > c.MostForBeads()*(1+1e-6):
+		return refusal{fmt.Errorf("free water never goes over beads: the lot holds %s, %s dissolves %s; draw the water off first", quantity.FormatWater(lot.Water()), c.Solvent.Name, quantity.FormatWater(c.saturated.water))}
 	}
 	return nil
+}
+
+// MostForBeads is the water (kg/kg) above which a lot holds free water.
+func (c *Case) MostForBeads() float64 {
+	if c.saturated.err != nil || !c.saturated.partly {
+		return math.Inf(1)
+	}
+	return math.Max(leastExcess*c.saturated.water, c.Lot.Water)
 }
 
 func (c *Case) soakRig(stirred bool) steps.SoakRig {

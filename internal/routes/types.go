@@ -54,7 +54,9 @@ type choice struct {
 	goesOn    bool // the next step takes the pot hot
 	soakHours float64
 	stirred   bool
-	after     string // what is done with the sieve
+	after     string  // what is done with the sieve
+	receiver  string  // of a trap; "": the first that fits
+	receiverC float64 // 0: the coldest in reach
 }
 
 // at returns the choices of stage i.
@@ -64,6 +66,14 @@ func (s Settings) at(r Route, i int) (c choice) {
 		c.hot = i > 0 && r[i-1].Kind == steps.Trap
 	}
 	c.goesOn = r[i].Kind == steps.Trap && i+1 < len(r) && r[i+1].Kind == steps.Forerun
+	if k := r[:i].count(steps.Trap); r[i].Kind == steps.Trap {
+		if k < len(s.Receiver) {
+			c.receiver = s.Receiver[k]
+		}
+		if k < len(s.ReceiverC) {
+			c.receiverC = s.ReceiverC[k]
+		}
+	}
 	if k := r[:i].count(steps.Soak); r[i].Kind == steps.Soak {
 		c.soakHours = s.SoakHours[k]
 		c.stirred = k < len(s.Stirred) && s.Stirred[k] // not given: still
@@ -81,6 +91,8 @@ type Settings struct {
 	Stages          []int     `json:"stages,omitempty"`     // of the column of each forerun; 0: a simple still
 	Stirred         []bool    `json:"stirred,omitempty"`    // one for each soak
 	Sieve           []string  `json:"sieve,omitempty"`      // "regenerate" or "discard", one for each soak or column
+	Receiver        []string  `json:"receiver,omitempty"`   // of each trap: key of the apparatus
+	ReceiverC       []float64 `json:"receiver_c,omitempty"` // of each trap: temperature, °C
 }
 
 // ErrRefused means that the physics refuses a step of a route on this lot.
@@ -98,6 +110,9 @@ func (s Settings) Fit(r Route) error {
 	if len(s.HandOverMgPerKg) != len(r)-1 || len(s.SoakHours) != soaks || len(s.Stirred) > soaks || len(s.Sieve) != beds {
 		return fmt.Errorf("%s: %w: %d hand-overs, %d soak hours, %d stirred, %d sieve choices", r.ID(), ErrSettings,
 			len(s.HandOverMgPerKg), len(s.SoakHours), len(s.Stirred), len(s.Sieve))
+	}
+	if traps := r.count(steps.Trap); len(s.Receiver) > traps || len(s.ReceiverC) > traps {
+		return fmt.Errorf("%s: %w: %d receivers, %d receiver temperatures for %d traps", r.ID(), ErrSettings, len(s.Receiver), len(s.ReceiverC), traps)
 	}
 	for _, h := range s.SoakHours {
 		if !(h > 0 && h <= longestSoakHours) {

@@ -55,7 +55,8 @@ func TestOrderIsIndependentOfTheInput(t *testing.T) {
 func TestRefineStaysInsideAndFindsTheMinimum(t *testing.T) {
 	for _, c := range []struct{ lo, hi, at float64 }{{0, 2, 1.3}, {0, 1, 1}, {1.5, 3, 1.5}} {
 		best, lowest := 0.0, 1e9
-		refine(func(u float64) float64 {
+		refined(func(at []float64) float64 {
+			u := at[0]
 			if u < c.lo || u > c.hi {
 				t.Fatalf("%g is outside %g to %g", u, c.lo, c.hi)
 			}
@@ -64,7 +65,7 @@ func TestRefineStaysInsideAndFindsTheMinimum(t *testing.T) {
 				best, lowest = u, v
 			}
 			return v
-		}, c.lo, c.hi)
+		}, []float64{c.lo}, []float64{c.hi}, 40)
 		if d := best - c.at; d > 0.01 || d < -0.01 {
 			t.Errorf("between %g and %g: %g, want %g", c.lo, c.hi, best, c.at)
 		}

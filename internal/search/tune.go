@@ -29,6 +29,7 @@ type Tuner struct {
 	Case      *routes.Case
 	Book      costs.Book
 	Objective Objective
+	Mix       *Mix               // of the objectives, where the job weighs several
 	Site      *costs.Arrangement // nil: uses are paid for as they come
 }
 
@@ -41,10 +42,18 @@ func (t *Tuner) Run(r routes.Route, s routes.Settings) (routes.Run, error) {
 	return run, err
 }
 
+// Value of the objective, or of the mix of objectives, for a run.
+func (t *Tuner) Value(run *routes.Run) (float64, error) {
+	if t.Mix != nil {
+		return t.Mix.Of(run, t.Book, t.Case.Lot.BatchesPerYear)
+	}
+	return t.Objective.Of(run, t.Book, t.Case.Lot.BatchesPerYear)
+}
+
 // trial is a run and how good it is.
 type trial struct {
 	run   routes.Run
-	stand stand
+	spot  spot
 	score float64
 }
 
@@ -53,263 +62,160 @@ type trial struct {
 const scoreMissed = 1e9
 
 func (t *Tuner) score(run *routes.Run) (float64, error) {
-	value, err := t.Objective.Of(run, t.Book, t.Case.Lot.BatchesPerYear)
+	value, err := t.Value(run)
 	if err != nil || run.Meets {
 		return value, err
 	}
 	return scoreMissed * (1 + math.Max(0, math.Log(run.WaterOut/t.Case.Goal()))), nil
 }
 
-// Tune returns the run with the best settings.
+// tuning is the search for the best settings of one route.
+type tuning struct {
+	t      *Tuner
+	route  routes.Route
+	blank  routes.Settings
+	axes   []axis
+	places []int
+	lo, hi []float64 // of ln(hand-over in mg/kg)
+	best   trial
+	last   error // why a spot could not be had
+	failed error // of the program itself
+}
+
+// Tune returns the run with the best settings: values of a few are tried out
+// along each axis, the water at the hand-overs is refined by the simplex method of
+// Nelder & Mead between bounds (gonum).
 func (t *Tuner) Tune(r routes.Route) (routes.Run, error) {
-	place := handOverPlace(r)
-	if place < 0 {
-		best, err := t.bestSoak(r, nil, func(soak stand, after string) routes.Settings { return settings(r, -1, 0, soak, after) })
-		return best.run, err
-	}
-	lo, hi, err := t.handOverRange(r, place)
+	return t.TuneFrom(r, nil)
+}
+
+// TuneFrom is Tune that starts from the settings found for a lot much like this
+// one, and looks around them only. Where they lead nowhere it looks everywhere.
+func (t *Tuner) TuneFrom(r routes.Route, warm *routes.Settings) (routes.Run, error) {
+	g, err := t.prepare(r)
 	if err != nil {
 		return routes.Run{}, err
 	}
-	best, err := t.bestHandOver(r, place, math.Log(lo), math.Log(hi))
-	return best.run, err
-}
-
-// handOverPlace is the last stage whose outlet is free to choose: a trap or a
-// forerun that is followed by another step. -1 if there is none. A trap before a
-// forerun is run as far as it goes: what it takes is not lost with the forerun.
-func handOverPlace(r routes.Route) int {
-	for i := len(r) - 2; i >= 0; i-- {
-		if r[i].Kind == steps.Trap && r[i+1].Kind != steps.Forerun || r[i].Kind == steps.Forerun {
-			return i
-		}
+	if warm != nil {
+		g.around(g.nearest(*warm))
 	}
-	return -1
+	if warm == nil || g.best.score >= scoreMissed {
+		g.everywhere()
+	}
+	switch {
+	case g.failed != nil:
+		return routes.Run{}, g.failed
+	case math.IsInf(g.best.score, 1):
+		return routes.Run{}, g.last
+	}
+	g.round()
+	return g.best.run, g.failed
 }
 
-// worthASieve is how far above the goal a trap hands over at least.
+func (t *Tuner) prepare(r routes.Route) (*tuning, error) {
+	g := &tuning{t: t, route: r, blank: blank(r), places: places(r), best: trial{score: math.Inf(1)}}
+	for _, place := range g.places {
+		lo, hi, err := t.handOverRange(r, place)
+		if err != nil {
+			return nil, err
+		}
+		g.lo, g.hi = append(g.lo, math.Log(lo)), append(g.hi, math.Log(hi))
+	}
+	stands, err := g.standsOnOffer()
+	if err != nil {
+		return nil, err
+	}
+	g.axes = t.axes(r, stands)
+	return g, nil
+}
+
+// worthASieve is how far above the goal a step hands over at least.
 const worthASieve = 1.25
 
-// handOverRange is from what the trap can do at best to what it is given.
+// handOverRange (mg/kg) is from what the step can do at best to what it is given.
 func (t *Tuner) handOverRange(r routes.Route, place int) (lo, hi float64, err error) {
-	head := r[:place+1]
-	run, err := t.driest(head)
-	if err != nil {
-		return 0, 0, err
+	lo, hi = worthASieve*t.Case.Goal()*1e6, t.Case.Feed.Water()*1e6 // a step after one that is at the goal already adds nothing
+	if kind := r[place].Kind; kind == steps.Trap || kind == steps.Forerun {
+		run, err := t.driest(r[:place+1])
+		if err != nil {
+			return 0, 0, err
+		}
+		o := run.Outcomes[place]
+		lo, hi = math.Max(lo, o.Out.Water()*1e6), o.In.Water()*1e6
 	}
-	trap := run.Outcomes[place]
-	lo, hi = trap.Out.Water()*1e6, trap.In.Water()*1e6
-	if least := worthASieve * t.Case.Goal() * 1e6; lo < least {
-		lo = least // a sieve after a trap that is at the goal already adds nothing
+	if next := r[place+1].Kind; next == steps.Soak || next == steps.Column {
+		hi = math.Min(hi, t.Case.MostForBeads()*1e6)
 	}
 	if lo >= hi {
-		return 0, 0, fmt.Errorf("%w: the lot is nearly at the goal: a trap leaves nothing for the sieve", routes.ErrRefused)
+		return 0, 0, fmt.Errorf("%w: the lot is nearly at the goal: a %s leaves nothing for what follows", routes.ErrRefused, r[place].Kind)
 	}
 	return lo, hi, nil
 }
 
 // driest runs a route whose last step is a trap or a forerun as far as it goes,
-// with the tallest column that does not waste the lot.
+// with the tallest column that does not waste the lot. Beds before it hand over at
+// the middle of what they can.
 func (t *Tuner) driest(head routes.Route) (run routes.Run, err error) {
 	stages := t.Case.ColumnStages()
 	for i := len(stages) - 1; i >= 0; i-- {
-		if run, err = t.Case.Run(head, settings(head, -1, 0, stand{stages: stages[i]}, "")); err == nil || !has(head, steps.Forerun) {
+		s := blank(head)
+		for k := range s.Stages {
+			s.Stages[k] = stages[i]
+		}
+		if run, err = t.Case.Run(head, s); err == nil || !has(head, steps.Forerun) {
 			return run, err
 		}
 	}
 	return run, err
 }
 
-// stand is how a soak is carried out.
-type stand struct {
-	hours   float64
-	stirred bool
-	stages  int // of the column, where the route draws a forerun
-}
-
-func settings(r routes.Route, place int, handOver float64, soak stand, after string) routes.Settings {
-	s := routes.Settings{HandOverMgPerKg: make([]float64, len(r)-1)}
-	if place >= 0 {
-		s.HandOverMgPerKg[place] = handOver
+// try runs a spot and keeps it if it is the best so far.
+func (g *tuning) try(s spot) float64 {
+	run, err := g.t.Run(g.route, g.settingsAt(s))
+	if err == nil {
+		err = g.t.inTime(&run)
 	}
-	for _, stage := range r {
-		switch stage.Kind {
-		case steps.Soak:
-			s.SoakHours, s.Stirred = append(s.SoakHours, soak.hours), append(s.Stirred, soak.stirred)
-			s.Sieve = append(s.Sieve, after)
-		case steps.Column:
-			s.Sieve = append(s.Sieve, after)
-		case steps.Forerun:
-			s.Stages = append(s.Stages, soak.stages)
-		}
-	}
-	return s
-}
-
-const coarsePoints = 9
-
-// bestHandOver scans ln(hand-over) coarsely with every stand and refines around
-// the best point, with its stand and the neighbours of it, by Nelder & Mead's
-// method in one bounded variable.
-func (t *Tuner) bestHandOver(r routes.Route, place int, lo, hi float64) (trial, error) {
-	best := trial{score: math.Inf(1)}
-	var last error
-	try := func(u float64, near *stand) float64 {
-		found, err := t.bestSoak(r, near, func(soak stand, after string) routes.Settings {
-			return settings(r, place, math.Exp(u), soak, after)
-		})
-		if err != nil {
-			last = err
-			return math.Inf(1)
-		}
-		if found.score < best.score {
-			best = found
-		}
-		return found.score
-	}
-	bestU := lo
-	spacing := (hi - lo) / (coarsePoints - 1)
-	lowest := math.Inf(1)
-	for i := range coarsePoints {
-		u := lo + spacing*float64(i)
-		if s := try(u, nil); s < lowest {
-			lowest, bestU = s, u
-		}
-	}
-	if math.IsInf(lowest, 1) {
-		return best, last
-	}
-	near := best.stand
-	refine(func(u float64) float64 { return try(u, &near) }, math.Max(lo, bestU-spacing), math.Min(hi, bestU+spacing))
-	return t.rounded(r, place, best, lo, hi)
-}
-
-// rounded prefers a hand-over of two digits where it costs next to nothing: it
-// is a number that somebody reads off a titrator.
-func (t *Tuner) rounded(r routes.Route, place int, best trial, lo, hi float64) (trial, error) {
-	const next = 1e-4 // share of the objective
-	exact := best.run.Settings.HandOverMgPerKg[place]
-	magnitude := math.Pow(10, math.Floor(math.Log10(exact))-1)
-	handOver := math.Round(exact/magnitude) * magnitude
-	if handOver < math.Exp(lo)*(1-1e-9) || handOver > math.Exp(hi) {
-		return best, nil
-	}
-	found, err := t.bestSoak(r, &best.stand, func(soak stand, after string) routes.Settings {
-		return settings(r, place, handOver, soak, after)
-	})
-	if err != nil || found.score > best.score*(1+next) {
-		return best, nil
-	}
-	return found, nil
-}
-
-// refine minimises f between lo and hi; u = lo + (hi - lo)/(1 + exp(-z)) keeps
-// the free variable z inside.
-func refine(f func(u float64) float64, lo, hi float64) {
-	inside := func(z []float64) float64 { return f(lo + (hi-lo)/(1+math.Exp(-z[0]))) }
-	limits := &optimize.Settings{FuncEvaluations: 40, Converger: &optimize.FunctionConverge{Relative: 1e-7, Iterations: 12}}
-	// The best point seen is kept by f itself; running into the limit is no failure.
-	_, _ = optimize.Minimize(optimize.Problem{Func: inside}, []float64{0}, limits, &optimize.NelderMead{SimplexSize: 1})
-}
-
-// bestSoak tries the stands, or those near one of them, and what is done with
-// the sieve afterwards.
-func (t *Tuner) bestSoak(r routes.Route, near *stand, with func(soak stand, after string) routes.Settings) (trial, error) {
-	stands := []stand{{}}
-	if has(r, steps.Soak) {
-		var err error
-		if stands, err = t.standsOnOffer(r, with); err != nil {
-			return trial{}, err
-		}
-	}
-	if has(r, steps.Forerun) {
-		stands = overColumns(stands, t.Case.ColumnStages())
-	}
-	best := trial{score: math.Inf(1)}
-	var last error
-	for i, soak := range stands {
-		if near != nil && !neighbours(stands, i, *near) {
-			continue
-		}
-		for _, after := range t.afterUse(r) {
-			found, err := t.one(r, with(soak, after))
-			if errors.Is(err, ErrTooSlow) || errors.Is(err, routes.ErrRefused) {
-				last = err
-				continue
-			}
-			if err != nil {
-				return trial{}, err
-			}
-			if found.score < best.score {
-				best = found
-				best.stand = soak
-			}
-		}
-	}
-	if math.IsInf(best.score, 1) {
-		return best, last
-	}
-	return best, nil
-}
-
-// overColumns crosses stands with the columns a forerun may be drawn over.
-func overColumns(stands []stand, stages []int) []stand {
-	var all []stand
-	for _, n := range stages {
-		for _, s := range stands {
-			s.stages = n
-			all = append(all, s)
-		}
-	}
-	return all
-}
-
-// neighbours reports whether stand i is near or next to it.
-func neighbours(stands []stand, i int, near stand) bool {
-	for k := max(0, i-1); k <= min(len(stands)-1, i+1); k++ {
-		if stands[k] == near {
-			return true
-		}
-	}
-	return false
-}
-
-// afterUse is what may be done with a sieve. One that is activated in the oven
-// before each use is not thrown away after it: using it again costs nothing more.
-func (t *Tuner) afterUse(r routes.Route) []string {
-	if !has(r, steps.Soak) && !has(r, steps.Column) {
-		return []string{""}
-	}
-	if t.Case.Lot.SieveHistoryK > 0 {
-		return []string{routes.Regenerate}
-	}
-	return []string{routes.Regenerate, routes.Discard}
-}
-
-func (t *Tuner) one(r routes.Route, s routes.Settings) (trial, error) {
-	run, err := t.Run(r, s)
 	if err != nil {
-		return trial{}, err
+		g.remember(err)
+		return math.Inf(1)
 	}
+	score, err := g.t.score(&run)
+	if err != nil {
+		g.failed = err
+		return math.Inf(1)
+	}
+	if score < g.best.score {
+		g.best = trial{run, s.clone(), score}
+	}
+	return score
+}
+
+func (g *tuning) remember(err error) {
+	if errors.Is(err, ErrTooSlow) || errors.Is(err, routes.ErrRefused) {
+		g.last = err
+		return
+	}
+	g.failed = err
+}
+
+func (t *Tuner) inTime(run *routes.Run) error {
 	if limit := t.Case.Lot.NeededWithinS / 3600; limit > 0 && run.HoursTotal > limit*(1+1e-9) {
-		return trial{}, fmt.Errorf("%w: takes %.3g h, needed within %.3g h", ErrTooSlow, run.HoursTotal, limit)
+		return fmt.Errorf("%w: takes %.3g h, needed within %.3g h", ErrTooSlow, run.HoursTotal, limit)
 	}
-	score, err := t.score(&run)
-	return trial{run: run, score: score}, err
+	return nil
 }
 
 // standsOnOffer are the usual stands, still and stirred, and the longest that is
 // done in time.
-func (t *Tuner) standsOnOffer(r routes.Route, with func(stand, string) routes.Settings) ([]stand, error) {
+func (g *tuning) standsOnOffer() ([]stand, error) {
 	longest := math.Inf(1)
-	if limit := t.Case.Lot.NeededWithinS / 3600; limit > 0 {
-		const probe = 1.0
-		run, err := t.Case.Run(r, with(stand{hours: probe, stages: t.Case.ColumnStages()[len(t.Case.ColumnStages())-1]}, routes.Discard))
+	if limit := g.t.Case.Lot.NeededWithinS / 3600; limit > 0 && has(g.route, steps.Soak) {
+		others, err := g.otherHours()
 		if err != nil {
 			return nil, err
 		}
-		if longest = math.Floor(2*(limit-(run.HoursTotal-probe))) / 2; longest <= 0 {
-			return nil, fmt.Errorf("%w: the other steps take %.3g h, needed within %.3g h", ErrTooSlow, run.HoursTotal-probe, limit)
+		if longest = math.Floor(2*(limit-others)) / 2; longest <= 0 {
+			return nil, fmt.Errorf("%w: the other steps take %.3g h, needed within %.3g h", ErrTooSlow, others, limit)
 		}
 	}
 	var stands []stand
@@ -319,16 +225,53 @@ func (t *Tuner) standsOnOffer(r routes.Route, with func(stand, string) routes.Se
 	}{{false, soakHours}, {true, stirredHours}} {
 		for _, h := range kind.hours {
 			if h < longest {
-				stands = append(stands, stand{hours: h, stirred: kind.stirred})
+				stands = append(stands, stand{h, kind.stirred})
 			}
 		}
 		if longest <= kind.hours[len(kind.hours)-1] {
-			stands = append(stands, stand{hours: longest, stirred: kind.stirred})
+			stands = append(stands, stand{longest, kind.stirred})
 		}
 	}
 	return stands, nil
 }
 
+// otherHours are the hours of a route beside those of one soak, at the wettest
+// hand-overs and the shortest other soaks.
+func (g *tuning) otherHours() (float64, error) {
+	const probe = 1.0
+	s := cloned(g.blank)
+	for i := range s.SoakHours {
+		s.SoakHours[i] = probe
+	}
+	for i := range s.Sieve {
+		s.Sieve[i] = routes.Discard
+	}
+	stages := g.t.Case.ColumnStages()
+	for i := range s.Stages {
+		s.Stages[i] = stages[len(stages)-1]
+	}
+	for i, place := range g.places {
+		s.HandOverMgPerKg[place] = math.Exp(g.hi[i]) * (1 - 1e-3*float64(i+1))
+	}
+	run, err := g.t.Case.Run(g.route, s)
+	return run.HoursTotal - probe, err
+}
+
 func has(r routes.Route, kind steps.Kind) bool {
 	return slices.ContainsFunc(r, func(s routes.Stage) bool { return s.Kind == kind })
+}
+
+// refined minimises f between bounds from a start; u = lo + (hi - lo)/(1 + exp(-z))
+// keeps the free variables z inside.
+func refined(f func(u []float64) float64, lo, hi []float64, most int) {
+	u := make([]float64, len(lo))
+	inside := func(z []float64) float64 {
+		for i := range z {
+			u[i] = lo[i] + (hi[i]-lo[i])/(1+math.Exp(-z[i]))
+		}
+		return f(u)
+	}
+	limits := &optimize.Settings{FuncEvaluations: most, Converger: &optimize.FunctionConverge{Relative: 1e-7, Iterations: 12}}
+	// The best point seen is kept by f itself; running into the limit is no failure.
+	_, _ = optimize.Minimize(optimize.Problem{Func: inside}, make([]float64, len(lo)), limits, &optimize.NelderMead{SimplexSize: 1})
 }

@@ -1,0 +1,126 @@
+package search
+
+import (
+	"math"
+	"slices"
+
+	"parch/internal/routes"
+	"parch/internal/steps"
+)
+
+// axis is a free setting with a few values, in an order in which neighbours are
+// alike.
+type axis struct {
+	count int
+	set   func(s *routes.Settings, value int)
+}
+
+// spot is one choice of every free setting: the place on each axis, and ln(water)
+// in mg/kg at each free hand-over.
+type spot struct {
+	at []int
+	u  []float64
+}
+
+func (s spot) clone() spot { return spot{slices.Clone(s.at), slices.Clone(s.u)} }
+
+// stand is how a soak is carried out.
+type stand struct {
+	hours   float64
+	stirred bool
+}
+
+// blank are settings of the right shape, with nothing chosen.
+func blank(r routes.Route) routes.Settings {
+	s := routes.Settings{HandOverMgPerKg: make([]float64, len(r)-1)}
+	for _, stage := range r {
+		switch stage.Kind {
+		case steps.Soak:
+			s.SoakHours, s.Stirred, s.Sieve = append(s.SoakHours, 0), append(s.Stirred, false), append(s.Sieve, "")
+		case steps.Column:
+			s.Sieve = append(s.Sieve, "")
+		case steps.Forerun:
+			s.Stages = append(s.Stages, 0)
+		case steps.Trap:
+			s.Receiver, s.ReceiverC = append(s.Receiver, ""), append(s.ReceiverC, 0)
+		}
+	}
+	return s
+}
+
+func cloned(s routes.Settings) routes.Settings {
+	s.HandOverMgPerKg, s.SoakHours, s.Stages = slices.Clone(s.HandOverMgPerKg), slices.Clone(s.SoakHours), slices.Clone(s.Stages)
+	s.Stirred, s.Sieve, s.Receiver, s.ReceiverC = slices.Clone(s.Stirred), slices.Clone(s.Sieve), slices.Clone(s.Receiver), slices.Clone(s.ReceiverC)
+	return s
+}
+
+// axes of a route, stage by stage. The stands of its soaks come from outside, as
+// they depend on the time that is left.
+func (t *Tuner) axes(r routes.Route, stands []stand) (all []axis) {
+	count := map[steps.Kind]int{}
+	beds := 0
+	for _, stage := range r {
+		k := count[stage.Kind]
+		count[stage.Kind]++
+		switch stage.Kind {
+		case steps.Trap:
+			all = append(all, oneOf(t.Case.Receivers(), func(s *routes.Settings, key string) { s.Receiver[k] = key }))
+			all = append(all, oneOf(t.Case.ReceiverTemperatures(), func(s *routes.Settings, c float64) { s.ReceiverC[k] = c }))
+		case steps.Forerun:
+			all = append(all, oneOf(t.Case.ColumnStages(), func(s *routes.Settings, n int) { s.Stages[k] = n }))
+		case steps.Soak:
+			all = append(all, oneOf(stands, func(s *routes.Settings, v stand) { s.SoakHours[k], s.Stirred[k] = v.hours, v.stirred }))
+		}
+		if stage.Kind == steps.Soak || stage.Kind == steps.Column {
+			bed := beds
+			beds++
+			all = append(all, oneOf(t.afterUse(), func(s *routes.Settings, after string) { s.Sieve[bed] = after }))
+		}
+	}
+	return all
+}
+
+func oneOf[T any](values []T, set func(*routes.Settings, T)) axis {
+	return axis{len(values), func(s *routes.Settings, i int) { set(s, values[i]) }}
+}
+
+// afterUse is what may be done with a sieve. One that is activated in the oven
+// before each use is not thrown away after it: using it again costs nothing more.
+func (t *Tuner) afterUse() []string {
+	if t.Case.Lot.SieveHistoryK > 0 {
+		return []string{routes.Regenerate}
+	}
+	return []string{routes.Regenerate, routes.Discard}
+}
+
+// places are the stages whose outlet is free to choose: a trap or a forerun and a
+// bed of sieve that something follows. A trap before a forerun is run as far as it
+// goes: what it takes is not lost with the forerun.
+func places(r routes.Route) (all []int) {
+	for i := range len(r) - 1 {
+		switch {
+		case r[i].Kind == steps.Trap && r[i+1].Kind == steps.Forerun:
+		case r[i].Kind == steps.Trap, r[i].Kind == steps.Forerun, r[i].Kind == steps.Soak, r[i].Kind == steps.Column:
+			all = append(all, i)
+		}
+	}
+	return all
+}
+
+// settingsAt turns a spot into settings.
+func (g *tuning) settingsAt(s spot) routes.Settings {
+	out := cloned(g.blank)
+	for i, a := range g.axes {
+		a.set(&out, s.at[i])
+	}
+	for i, place := range g.places {
+		out.HandOverMgPerKg[place] = significant(math.Exp(s.u[i]), 10)
+	}
+	return out
+}
+
+// significant rounds to so many digits.
+func significant(x float64, digits int) float64 {
+	unit := math.Pow(10, math.Floor(math.Log10(x))-float64(digits-1))
+	return math.Round(x/unit) * unit
+}

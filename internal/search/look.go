@@ -1,0 +1,219 @@
+package search
+
+import (
+	"math"
+	"reflect"
+
+	"parch/internal/routes"
+)
+
+// Sizes of a search.
+const (
+	coarsePoints = 9   // of ln(hand-over) along one hand-over
+	mostProduct  = 120 // combinations of the axes that are all tried
+	mostRefined  = 40  // runs of one refinement, for each hand-over
+	shortAxis    = 4   // values that are all tried where a long axis is walked
+)
+
+// everywhere scans the hand-overs coarsely, each point with the axes found best at
+// its neighbour and around them, and refines around the best.
+func (g *tuning) everywhere() {
+	grid := g.grid()
+	for i, u := range grid {
+		start := spot{make([]int, len(g.axes)), u}
+		if i > 0 && !math.IsInf(g.best.score, 1) {
+			start.at = g.best.spot.clone().at
+			g.descend(start)
+			continue
+		}
+		g.allAxes(start)
+	}
+	if len(g.places) == 0 || math.IsInf(g.best.score, 1) {
+		return
+	}
+	g.refine(1.0 / (coarsePoints - 1))
+	g.allAxes(g.best.spot.clone())
+	g.refine(0.25 / (coarsePoints - 1))
+}
+
+// around looks near a spot.
+func (g *tuning) around(s spot) {
+	g.descend(s)
+	if len(g.places) == 0 || math.IsInf(g.best.score, 1) {
+		return
+	}
+	g.refine(0.25 / (coarsePoints - 1))
+	g.descend(g.best.spot.clone())
+}
+
+// grid are the coarse hand-overs: a line for one, a lattice in which the water
+// falls from step to step for several.
+func (g *tuning) grid() [][]float64 {
+	grid := [][]float64{nil}
+	for i := range g.places {
+		points := coarsePoints
+		if len(g.places) > 1 {
+			points = 4
+		}
+		var next [][]float64
+		for _, head := range grid {
+			for k := range points {
+				u := g.lo[i] + (g.hi[i]-g.lo[i])*float64(k)/float64(points-1)
+				if i == 0 || u < head[i-1] {
+					next = append(next, append(append([]float64{}, head...), u))
+				}
+			}
+		}
+		grid = next
+	}
+	return grid
+}
+
+// allAxes tries every combination of the axes at the hand-overs of a spot or,
+// where those are too many, every value of each axis in turn until none helps.
+func (g *tuning) allAxes(s spot) {
+	product := 1
+	for _, a := range g.axes {
+		product *= a.count
+	}
+	if product > mostProduct {
+		g.sweep(s)
+		return
+	}
+	at := spot{make([]int, len(g.axes)), s.u}
+	for range product {
+		g.try(at)
+		for i := len(at.at) - 1; i >= 0; i-- { // the last axis turns fastest
+			if at.at[i]++; at.at[i] < g.axes[i].count {
+				break
+			}
+			at.at[i] = 0
+		}
+	}
+}
+
+// sweep tries all values of one axis after another, from the best found so far,
+// until a round brings nothing.
+func (g *tuning) sweep(s spot) {
+	s = s.clone()
+	lowest := g.try(s)
+	for better := true; better; {
+		better = false
+		for i := range g.axes {
+			before := lowest
+			lowest = g.along(s, i, lowest)
+			better = better || lowest < before
+		}
+	}
+}
+
+// descend moves along the axes while that helps: from neighbour to neighbour, or
+// over all values of a short axis.
+func (g *tuning) descend(s spot) {
+	s = s.clone()
+	lowest := g.try(s)
+	for better := true; better; {
+		better = false
+		for i, a := range g.axes {
+			before := lowest
+			if a.count <= shortAxis {
+				lowest = g.along(s, i, lowest)
+			} else {
+				lowest = g.downhill(s, i, lowest)
+			}
+			better = better || lowest < before
+		}
+	}
+}
+
+// along tries all values of an axis and leaves the spot at the best.
+func (g *tuning) along(s spot, i int, lowest float64) float64 {
+	kept := s.at[i]
+	for v := range g.axes[i].count {
+		if v == kept {
+			continue
+		}
+		s.at[i] = v
+		if score := g.try(s); score < lowest {
+			lowest, kept = score, v
+		}
+	}
+	s.at[i] = kept
+	return lowest
+}
+
+// downhill walks along an axis, to either side, until it rises.
+func (g *tuning) downhill(s spot, i int, lowest float64) float64 {
+	for _, step := range []int{1, -1} {
+		for next := s.at[i] + step; next >= 0 && next < g.axes[i].count; next = s.at[i] + step {
+			before := s.at[i]
+			s.at[i] = next
+			score := g.try(s)
+			if score >= lowest {
+				s.at[i] = before
+				break
+			}
+			lowest = score
+		}
+	}
+	return lowest
+}
+
+// refine moves the hand-overs of the best spot within a share of their range.
+func (g *tuning) refine(share float64) {
+	at := g.best.spot.clone()
+	lo, hi := make([]float64, len(g.lo)), make([]float64, len(g.lo))
+	for i := range g.lo {
+		width := share * (g.hi[i] - g.lo[i])
+		lo[i], hi[i] = math.Max(g.lo[i], at.u[i]-width), math.Min(g.hi[i], at.u[i]+width)
+	}
+	refined(func(u []float64) float64 { return g.try(spot{at.at, u}) }, lo, hi, mostRefined*len(lo))
+}
+
+// nearest is the spot next to settings of another lot.
+func (g *tuning) nearest(warm routes.Settings) spot {
+	s := spot{make([]int, len(g.axes)), make([]float64, len(g.places))}
+	for i, place := range g.places {
+		s.u[i] = (g.lo[i] + g.hi[i]) / 2
+		if place < len(warm.HandOverMgPerKg) && warm.HandOverMgPerKg[place] > 0 {
+			s.u[i] = math.Min(g.hi[i], math.Max(g.lo[i], math.Log(warm.HandOverMgPerKg[place])))
+		}
+	}
+	shape := cloned(g.blank)
+	copy(shape.SoakHours, warm.SoakHours)
+	copy(shape.Stages, warm.Stages)
+	copy(shape.Stirred, warm.Stirred)
+	copy(shape.Sieve, warm.Sieve)
+	copy(shape.Receiver, warm.Receiver)
+	copy(shape.ReceiverC, warm.ReceiverC)
+	for i, a := range g.axes {
+		for v := range a.count {
+			probe := cloned(shape)
+			if a.set(&probe, v); reflect.DeepEqual(probe, shape) {
+				s.at[i] = v
+			}
+		}
+	}
+	return s
+}
+
+// round prefers hand-overs of two digits where they cost next to nothing: they
+// are numbers that somebody reads off a titrator.
+func (g *tuning) round() {
+	if len(g.places) == 0 {
+		return
+	}
+	const next = 1e-4 // share of the objective
+	exact := g.best
+	s := exact.spot.clone()
+	for i := range s.u {
+		s.u[i] = math.Log(significant(math.Exp(s.u[i]), 2))
+		if s.u[i] < g.lo[i]-1e-9 || s.u[i] > g.hi[i] {
+			return
+		}
+	}
+	g.best.score = math.Inf(1)
+	if g.try(s); g.best.score > exact.score*(1+next) {
+		g.best = exact
+	}
+}
