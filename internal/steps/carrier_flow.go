@@ -87,19 +87,14 @@ func (r *refluxing) filling(s *state) (state, condensed, error) {
 	return d, c, nil
 }
 
-// pushing keeps the organic layer and returns as much dry carrier by volume.
+// pushing keeps the condensate and returns as much dry carrier by volume: a full
+// receiver runs over by what falls into it, whichever layer that joins.
 func (r *refluxing) pushing(s *state) (state, condensed, error) {
-	c, err := r.condense(s)
+	d, c, err := r.filling(s)
 	if err != nil {
 		return state{}, c, err
 	}
-	d := r.vapour(&c)
-	organic, aqueous := c.head.Y, Fractions{}
-	if c.split.Exists {
-		organic, aqueous = scaled(c.split.Organic, 1-c.split.AqueousShare), scaled(c.split.Aqueous, c.split.AqueousShare)
-	}
-	d.aqueous, d.held = aqueous, organic
-	d.pushedM3 = total(organic) * r.m.MolarVolume(scaled(organic, 1/total(organic)), r.eq.ReceiverK)
+	d.pushedM3 = r.m.MolarVolume(c.head.Y, r.eq.ReceiverK)
 	returned := Fractions{inCarrier: d.pushedM3 / r.carrierM3()}
 	d.held[inCarrier] -= returned[inCarrier]
 	d.pot[inCarrier] += returned[inCarrier]

@@ -13,7 +13,8 @@ const (
 	carrierShortestStep = goneShare / 100 // of the pot, so that a trace boiled off at a steady rate is followed until it is gone
 	carrierMostSteps    = 3000
 	progressAccuracy    = 1e-5
-	mostGrowth          = 1.0 // of ln n in a step; nothing in the pot should grow
+	carrierJumpStep     = 1e-7 // of the pot: the end is known to so much where the layers end at once
+	mostGrowth          = 1.0  // of ln n in a step; nothing in the pot should grow
 )
 
 func ignore(*state, *condensed) {}
@@ -43,7 +44,7 @@ func (r *refluxing) march(rate flow, progress func(*state, *condensed) float64, 
 			break // even the shortest step came to nothing
 		}
 		after := progress(&next, &lastC)
-		if after > 1+progressAccuracy && step > tiny {
+		if after > 1+progressAccuracy && step > r.endStep(after) {
 			step *= math.Max(0.02, math.Min(0.98, (1-done)/(after-done)))
 			continue
 		}
@@ -57,6 +58,15 @@ func (r *refluxing) march(rate flow, progress func(*state, *condensed) float64, 
 	}
 	return fmt.Errorf("%w: %s and %s, %d steps, %.3g mg/kg of water in the pot", ErrUnsolved,
 		r.m.Pure[inSolvent].Key, r.m.Pure[inCarrier].Key, len(r.course), r.dryness(&r.s)*mgPerKg)
+}
+
+// endStep is the step that is short enough to end with. Progress jumps to infinity
+// where the layers end at once, such as an organic layer that shrinks to nothing.
+func (r *refluxing) endStep(after float64) float64 {
+	if math.IsInf(after, 1) {
+		return carrierJumpStep * total(r.s.pot)
+	}
+	return carrierShortestStep * total(r.s.pot)
 }
 
 // The pair of fifth and fourth order: nodes fall away, since the flow depends on

@@ -226,7 +226,7 @@ func TestCarrierBalances(t *testing.T) {
 			eqs = append(eqs, carrierEquilibrium(t, k[0], k[1], receiver))
 		}
 	}
-	ran, unsolved := 0, 0
+	ran := 0
 	rapid.Check(t, func(rt *rapid.T) {
 		eq := rapid.SampledFrom(eqs).Draw(rt, "mixture")
 		water := math.Exp(rapid.Float64Range(math.Log(100e-6), math.Log(0.3)).Draw(rt, "ln w"))
@@ -238,13 +238,8 @@ func TestCarrierBalances(t *testing.T) {
 		r.HeaterW = rapid.Float64Range(300, 4000).Draw(rt, "W")
 		r.Charges = rapid.IntRange(1, 3).Draw(rt, "charges")
 		o, err := steps.RunCarrier(eq, feed, plan, r, rules)
-		var split *thermo.NotConverged
 		switch {
 		case errors.Is(err, steps.ErrNoCarrier):
-			return
-		case errors.Is(err, steps.ErrUnsolved), errors.As(err, &split):
-			unsolved++
-			t.Log(err)
 			return
 		case err != nil:
 			rt.Fatal(err)
@@ -268,9 +263,44 @@ func TestCarrierBalances(t *testing.T) {
 	if ran == 0 {
 		t.Error("no run went through")
 	}
-	// Near the edge of two layers 7 runs of 12000 were not solved; they say so.
-	if unsolved > 1+ran/100 {
-		t.Errorf("%d runs were not solved, %d were", unsolved, ran)
+}
+
+// Runs that end at the edge of two layers, where the organic layer of the
+// condensate shrinks to nothing, or begin on it: found by random runs of the
+// balances above.
+func TestCarrierAtTheEdgeOfTwoLayers(t *testing.T) {
+	for _, c := range []struct {
+		solvent, carrier               string
+		receiverC, water, litres, dose float64
+		stages                         int
+		preFilled                      bool
+		goal                           float64
+		charges                        int
+		want                           string
+	}{
+		{"ethanol", "cyclohexane", 10, 0.02581100663500964, 3.9673298556663212, 0.05, 1, true, 0.2180391346118995, 3, "do not settle"},
+		{"ethanol", "cyclohexane", 10, 0.029980716999603557, 1.9263801574707031, 0.088140545377330293, 0, true, 0.047931754837653016, 2, "do not settle"},
+		{"n-n-dimethylformamide", "toluene", 10, 0.16835916284868391, 3.9444505438068518, 0.066423043259419501, 0, true, 0.048978615089054885, 3, "do not settle"},
+		{"n-n-dimethylformamide", "toluene", 25, 0.29999999999999999, 9.0727877616882324, 1, 0, false, 0.080079801577085163, 3, "one liquid"},
+		{"n-n-dimethylformamide", "toluene", 25, 0.014814076666171789, 6.9420175738632679, 0.15380859375, 1, false, 0.042140581941566779, 1, "one liquid"},
+	} {
+		eq := carrierEquilibrium(t, c.solvent, c.carrier, c.receiverC)
+		feed := carrierLot(eq, c.litres, c.water)
+		plan := withColumn(feed, c.dose, c.stages)
+		plan.PreFilled, plan.Goal = c.preFilled, c.water*c.goal
+		r := rig("either")
+		r.Charges = c.charges
+		o, err := steps.RunCarrier(eq, feed, plan, r, rules)
+		told := o.WhyText
+		if err != nil {
+			told = err.Error()
+		}
+		if err != nil && !errors.Is(err, steps.ErrNoCarrier) || !strings.Contains(told, c.want) {
+			t.Errorf("%+v: %s", c, told)
+		}
+		if len(o.Course) > 100 {
+			t.Errorf("%+v: %d steps", c, len(o.Course))
+		}
 	}
 }
 

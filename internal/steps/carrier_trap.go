@@ -8,19 +8,15 @@ import (
 	"parch/internal/thermo"
 )
 
-// fill gets the receiver full and the organic layer of it to a place of its own.
+// fill gets the receiver full of condensate, and parts that into layers.
 func (r *refluxing) fill() error {
+	rate, full := r.filling, func(s *state, _ *condensed) float64 {
+		return r.liquidM3(s.held, r.eq.ReceiverK) / r.rig.FillVolumeM3
+	}
 	if r.plan.PreFilled {
-		return r.march(r.pushing, func(s *state, _ *condensed) float64 { return s.pushedM3 / r.rig.FillVolumeM3 }, ignore)
+		rate, full = r.pushing, func(s *state, _ *condensed) float64 { return s.pushedM3 / r.rig.FillVolumeM3 }
 	}
-	full := func(s *state, _ *condensed) float64 {
-		n := total(s.held)
-		if n == 0 {
-			return 0
-		}
-		return n * r.m.MolarVolume(scaled(s.held, 1/n), r.eq.ReceiverK) / r.rig.FillVolumeM3
-	}
-	if err := r.march(r.filling, full, ignore); err != nil {
+	if err := r.march(rate, full, ignore); err != nil {
 		return err
 	}
 	split, err := r.part(r.s.held)

@@ -35,6 +35,11 @@ func (l *liquid) refine(z *Fractions, lnK Fractions, outsideFor int) (TernarySpl
 		if i > outsideFor && !(p.share > 0 && p.share < 1) {
 			break // the feed lies outside the layers, and stays there
 		}
+		if i >= wait && p.size < finishClose {
+			if end, found := l.finish(z, p); found {
+				return l.accept(z, &end), nil
+			}
+		}
 		next, better := partition{}, false
 		if i >= wait {
 			if next, better = l.newton(z, &p, i > flashPatience); !better {
