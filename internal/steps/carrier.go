@@ -67,6 +67,9 @@ const leastVolatility = 1.05
 
 // NewCarrierEquilibrium solves for the azeotrope, or says why the carrier cannot work.
 func NewCarrierEquilibrium(model *thermo.Ternary, organic *thermo.OrganicLayer, doubt CarrierDoubt, receiverK, pressurePa float64) (*CarrierEquilibrium, error) {
+	whole := *model
+	model = &whole
+	model.FindMixing()
 	eq := &CarrierEquilibrium{Model: model, Organic: organic, Doubt: doubt, ReceiverK: receiverK, PressurePa: pressurePa}
 	if err := model.CheckPressure(pressurePa); err != nil {
 		return nil, fmt.Errorf("%w: %w", ErrNoCarrier, err)

@@ -12,9 +12,9 @@ const (
 	carrierLongestStep  = 2.0             // of the pot
 	carrierShortestStep = goneShare / 100 // of the pot, so that a trace boiled off at a steady rate is followed until it is gone
 	carrierMostSteps    = 3000
-	progressAccuracy    = 1e-5
 	carrierJumpStep     = 1e-7 // of the pot: the end is known to so much where the layers end at once
-	mostGrowth          = 1.0  // of ln n in a step; nothing in the pot should grow
+	progressAccuracy    = 2e-5
+	mostGrowth          = 1.0 // of ln n in a step; nothing in the pot should grow
 )
 
 func ignore(*state, *condensed) {}
@@ -28,24 +28,23 @@ func (r *refluxing) march(rate flow, progress func(*state, *condensed) float64, 
 		return err
 	}
 	r.note(&c)
-	step := carrierFirstStep * total(r.s.pot)
+	p := pace{step: carrierFirstStep * total(r.s.pot), least: carrierJumpStep * total(r.s.pot), done: progress(&r.s, &c)}
 	for range carrierMostSteps {
 		tiny := carrierShortestStep * total(r.s.pot)
-		done := progress(&r.s, &c)
-		next, last, lastC, off, err := r.advance(rate, &slope, step)
+		next, last, lastC, off, err := r.advance(rate, &slope, p.step)
 		if err != nil {
 			return err
 		}
-		if !(off <= 1) && step > tiny {
-			step *= math.Max(0.2, 0.9/math.Pow(off, 0.2))
+		if !(off <= 1) && p.step > tiny {
+			p.shorten(off)
 			continue
 		}
 		if !(off < math.Inf(1)) {
 			break // even the shortest step came to nothing
 		}
 		after := progress(&next, &lastC)
-		if after > 1+progressAccuracy && step > r.endStep(after) {
-			step *= math.Max(0.02, math.Min(0.98, (1-done)/(after-done)))
+		if after > 1+progressAccuracy && p.step > r.endStep(after) {
+			p.overshot(after)
 			continue
 		}
 		r.s, slope, c = next, last, lastC
@@ -54,7 +53,7 @@ func (r *refluxing) march(rate flow, progress func(*state, *condensed) float64, 
 		if after > 1-progressAccuracy {
 			return nil
 		}
-		step = math.Min(step*math.Min(5, 0.9*math.Pow(math.Max(off, 1e-9), -0.2)), carrierLongestStep*total(r.s.pot))
+		p.accepted(off, after, carrierLongestStep*total(r.s.pot))
 	}
 	return fmt.Errorf("%w: %s and %s, %d steps, %.3g mg/kg of water in the pot", ErrUnsolved,
 		r.m.Pure[inSolvent].Key, r.m.Pure[inCarrier].Key, len(r.course), r.dryness(&r.s)*mgPerKg)

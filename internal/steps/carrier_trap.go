@@ -50,20 +50,22 @@ func (r *refluxing) reflux() error {
 	if err != nil || r.dryness(&r.s) <= goal {
 		return err
 	}
-	wet := math.Log(r.dryness(&r.s) / goal)
-	brisk := math.Log(r.briskness(&r.s, &first))
-	lnHeel := math.Log(r.leastKg() / r.trapFromKg)
-	if !(brisk > 0) || lnHeel >= 0 {
-		r.why, r.whyText = r.ended(&r.s, &first)
-		return nil
+	begin := r.leeway(&r.s, &first)
+	for _, l := range begin {
+		if !(l > 0) {
+			r.why, r.whyText = r.ended(&r.s, &first)
+			return nil
+		}
 	}
 	progress := func(s *state, c *condensed) float64 {
-		if stop, _ := r.blocked(s, c); stop != "" {
-			return math.Inf(1)
+		if l := r.m.Settle(c.split, r.eq.ReceiverK); l.Return != thermo.None && !r.fits(l.Return) {
+			return math.Inf(1) // the layers have changed places within a step
 		}
-		done := math.Max(1-math.Log(r.dryness(s)/goal)/wet, 1-math.Log(r.briskness(s, c))/brisk)
-		done = math.Max(done, math.Log(r.massKg(s.pot)/r.trapFromKg)/lnHeel)
-		return math.Max(done, r.timeSpent(s))
+		done := r.timeSpent(s)
+		for i, l := range r.leeway(s, c) {
+			done = math.Max(done, 1-l/begin[i])
+		}
+		return done
 	}
 	var last condensed
 	err = r.march(r.returning, progress, func(s *state, c *condensed) {
@@ -103,36 +105,84 @@ func (r *refluxing) efficiency(s *state) float64 {
 	return 1
 }
 
-// blocked says why the receiver cannot go on with a condensate.
-func (r *refluxing) blocked(s *state, c *condensed) (stop Stop, text string) {
-	pot := quantity.FormatWater(r.dryness(s))
-	l := r.m.Settle(c.split, r.eq.ReceiverK)
-	switch {
-	case !c.split.Exists:
-		return AtOneLayer, fmt.Sprintf("no second layer: the condensate of a pot at %s is one liquid at %.0f °C", pot, r.eq.ReceiverK-273.15)
-	case l.Return == thermo.None:
-		return AtExchange, fmt.Sprintf("%s, with %s in the pot", l.Reason, pot)
-	case r.carrierFree(c.split.Aqueous) <= r.dryness(s):
-		return AtFloor, fmt.Sprintf("floor: with %s in the pot the aqueous layer is no wetter", pot)
-	case !r.fits(l.Return):
-		return AtExchange, fmt.Sprintf("the layers change places with %s in the pot: organic %.0f, aqueous %.0f kg/m3", pot, l.OrganicKgPerM3, l.AqueousKgPerM3)
+// leastReturn is the share of the condensate that goes back, in moles, below which
+// a trap returns nothing: what it boils off is all kept.
+const leastReturn = 1e-3
+
+// leastCarrier is the mole share of the pot below which the carrier is used up: what
+// was charged stands in the receiver or has left with the aqueous layer.
+const leastCarrier = 1e-6
+
+// What brings a trap to its end; the places in leeway.
+const (
+	byGoal = iota
+	byRate
+	byHeel
+	byDensity
+	byReturn
+	byWater
+	byCarrier
+	waysToEnd
+)
+
+// leeway is how far the trap is from each end, as logarithms that fall to 0.
+// Without layers it is far beyond some of them.
+func (r *refluxing) leeway(s *state, c *condensed) (ln [waysToEnd]float64) {
+	dry := r.dryness(s)
+	ln[byGoal] = math.Log(dry / r.goal)
+	ln[byCarrier] = math.Log(s.pot[inCarrier] / total(s.pot) / leastCarrier)
+	ln[byHeel] = math.Log(r.massKg(s.pot) / r.leastKg())
+	if !c.split.Exists {
+		ln[byRate], ln[byDensity], ln[byReturn], ln[byWater] = math.Inf(-1), math.Inf(-1), math.Inf(-1), math.Inf(-1)
+		return ln
 	}
-	return "", ""
+	layers := r.m.Settle(c.split, r.eq.ReceiverK)
+	ln[byRate] = math.Log(r.briskness(s, c))
+	ln[byDensity] = math.Log(layers.DensityDifference() / thermo.LeastDensityDifference)
+	ln[byReturn] = math.Log((1 - c.split.AqueousShare) / leastReturn)
+	ln[byWater] = math.Log(r.carrierFree(c.split.Aqueous) / dry)
+	return ln
+}
+
+// nearest is the end that a trap has come to, or -1.
+func (r *refluxing) nearest(s *state, c *condensed) int {
+	const reached = 1e-3
+	for i, l := range r.leeway(s, c) {
+		if l < reached {
+			return i
+		}
+	}
+	return -1
 }
 
 // ended says why a trap that has not reached its goal has come to its end.
 func (r *refluxing) ended(s *state, c *condensed) (stop Stop, text string) {
-	if stop, text = r.blocked(s, c); stop != "" {
-		return stop, text
-	}
 	pot := quantity.FormatWater(r.dryness(s))
-	switch {
-	case r.timeSpent(s) > 1-1e-4:
-		return AtTime, fmt.Sprintf("time: %.3g h under the trap are over, with %s in the pot", r.plan.LongestS/secondsPerHour, pot)
-	case r.massKg(s.pot) < r.leastKg()*(1+1e-3):
-		return AtHeel, fmt.Sprintf("heel: the aqueous layer has taken all but %.0f %% of the charge", 100*r.plan.HeelShare)
+	receiver := r.eq.ReceiverK - 273.15
+	l := r.m.Settle(c.split, r.eq.ReceiverK)
+	if s.pot[inCarrier]/total(s.pot) < leastCarrier*(1+1e-3) {
+		return AtCarrier, fmt.Sprintf("carrier used up: what is left of %s stands in the receiver, with %s in the pot; take more", r.m.Pure[inCarrier].Key, pot)
 	}
-	return AtFloor, fmt.Sprintf("floor: with %s in the pot hardly any second layer forms at %.0f °C", pot, r.eq.ReceiverK-273.15)
+	if !c.split.Exists {
+		return AtOneLayer, fmt.Sprintf("no second layer: the condensate of a pot at %s is one liquid at %.0f °C", pot, receiver)
+	}
+	if r.timeSpent(s) > 1-1e-4 {
+		return AtTime, fmt.Sprintf("time: %.3g h under the trap are over, with %s in the pot", r.plan.LongestS/secondsPerHour, pot)
+	}
+	switch r.nearest(s, c) {
+	case byHeel:
+		return AtHeel, fmt.Sprintf("heel: the aqueous layer has taken all but %.0f %% of the charge", 100*r.plan.HeelShare)
+	case byDensity:
+		return AtExchange, fmt.Sprintf("the layers' densities differ by %.1f %% only and do not settle, with %s in the pot", 100*l.DensityDifference(), pot)
+	case byReturn:
+		return AtOneLayer, fmt.Sprintf("no organic layer: the condensate of a pot at %s is hardly anything but aqueous layer at %.0f °C", pot, receiver)
+	case byWater:
+		return AtFloor, fmt.Sprintf("floor: with %s in the pot the aqueous layer is no wetter", pot)
+	}
+	if !r.fits(l.Return) {
+		return AtExchange, fmt.Sprintf("the layers change places with %s in the pot: organic %.0f, aqueous %.0f kg/m3", pot, l.OrganicKgPerM3, l.AqueousKgPerM3)
+	}
+	return AtFloor, fmt.Sprintf("floor: with %s in the pot hardly any second layer forms at %.0f °C", pot, receiver)
 }
 
 // watch notes what changes at an accepted step: the return needed, and how well

@@ -35,6 +35,7 @@ const (
 	AtHeel     Stop = "heel"                 // as much drawn off as may be
 	AtOneLayer Stop = "no second layer"      // the condensate no longer splits
 	AtExchange Stop = "layers change places" // the return no longer fits
+	AtCarrier  Stop = "carrier used up"      // none is left in the pot
 )
 
 // Lot is an amount of solvent, its water and what is left of a carrier.

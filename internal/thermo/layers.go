@@ -22,15 +22,21 @@ func (m *Ternary) Settle(s TernarySplit, tK float64) TernaryLayers {
 		return l
 	}
 	l.OrganicKgPerM3, l.AqueousKgPerM3 = m.Density(s.Organic, tK), m.Density(s.Aqueous, tK)
-	switch ratio := l.OrganicKgPerM3 / l.AqueousKgPerM3; {
-	case math.Abs(ratio-1) < leastDensityDifference:
-		l.Reason = fmt.Sprintf("the layers' densities differ by %.1f %% only and do not settle", 100*math.Abs(ratio-1))
-	case ratio < 1:
+	switch difference := l.DensityDifference(); {
+	case difference < LeastDensityDifference:
+		l.Reason = fmt.Sprintf("the layers' densities differ by %.1f %% only and do not settle", 100*difference)
+	case l.OrganicKgPerM3 < l.AqueousKgPerM3:
 		l.Return = Light
 	default:
 		l.Return = Heavy
 	}
 	return l
+}
+
+// DensityDifference is how far the density of the organic layer is from that of
+// the aqueous one, as a share of the latter.
+func (l *TernaryLayers) DensityDifference() float64 {
+	return math.Abs(l.OrganicKgPerM3/l.AqueousKgPerM3 - 1)
 }
 
 // CheckReceiver refuses a receiver in which water, the carrier (the main

@@ -127,9 +127,9 @@ const (
 	None  Returns = "none"
 )
 
-// leastDensityDifference is the share by which layers must differ to settle
+// LeastDensityDifference is the share by which layers must differ to settle
 // (common practice, no source).
-const leastDensityDifference = 0.02
+const LeastDensityDifference = 0.02
 
 // Layers are the layers in a receiver with their densities.
 type Layers struct {
@@ -159,7 +159,7 @@ func (m *Mixture) LayersAt(tK float64) (Layers, error) {
 	}
 	l := Layers{Split: s, OrganicKgPerM3: m.layerDensity(s.XOrganic, tK), AqueousKgPerM3: m.layerDensity(s.XAqueous, tK)}
 	switch ratio := l.OrganicKgPerM3 / l.AqueousKgPerM3; {
-	case math.Abs(ratio-1) < leastDensityDifference:
+	case math.Abs(ratio-1) < LeastDensityDifference:
 		l.Return = None
 		l.Reason = fmt.Sprintf("the layers' densities differ by %.1f %% only and do not settle", 100*math.Abs(ratio-1))
 	case ratio < 1:

@@ -30,8 +30,12 @@ func (l *liquid) unstable(z *Fractions) (t unstableTrials) {
 // isUnstable is unstable as far as the first trial found.
 func (l *liquid) isUnstable(z *Fractions) bool {
 	plane := l.plane(z)
+	dry := plane[InWater] < lnDryActivity
+	if dry && l.mix {
+		return false
+	}
 	for start := range trialStarts {
-		if watery(start) && plane[InWater] < lnDryActivity {
+		if dry && watery(start) {
 			continue
 		}
 		if _, _, ok := l.descend(z, &plane, trialFrom(z, start)); ok {

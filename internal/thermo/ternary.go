@@ -22,6 +22,9 @@ type Ternary struct {
 	// Below SpuriousGapBelowK the solvent-carrier set shows a gap that the
 	// liquids do not have; 0: it never does.
 	SpuriousGapBelowK float64
+	// MixAboveK is a temperature above which solvent and carrier mix whatever
+	// their shares, so that a nearly dry liquid is one; 0: not known.
+	MixAboveK float64
 }
 
 // TernaryTerm is added to the excess Gibbs energy of the three pairs and
@@ -60,10 +63,11 @@ type liquid struct {
 	tau, g square
 	extra  TernaryTerm
 	slope  float64 // 298.15 K/T - 1
+	mix    bool    // solvent and carrier mix
 }
 
 func (m *Ternary) at(tK float64) liquid {
-	l := liquid{extra: m.Extra, slope: 298.15/tK - 1}
+	l := liquid{extra: m.Extra, slope: 298.15/tK - 1, mix: m.MixAboveK > 0 && tK > m.MixAboveK}
 	l.tau, l.g = m.NRTL.factors(tK)
 	return l
 }

@@ -1,0 +1,63 @@
+package steps
+
+import "math"
+
+// pace chooses the steps of a march from the errors of the last ones, and closes
+// in on the end once a step has gone past it.
+type pace struct {
+	step, least float64
+	done        float64 // progress so far; 1 at the end
+
+	shortened    bool    // since the last step that was taken
+	past         float64 // from here, a step that is known to go past the end; 0: none
+	progressPast float64 // progress there
+}
+
+// Factors of a step on the next one. The error of a pot that falls exponentially
+// grows faster with the step than its fifth power.
+const (
+	mostStretch  = 2.5
+	mostShrink   = 0.2
+	safety       = 0.9
+	stretchPower = 0.15
+	shrinkPower  = 0.2
+)
+
+// shorten after a step whose error is off times what is allowed.
+func (p *pace) shorten(off float64) {
+	p.step *= math.Max(mostShrink, safety*math.Pow(off, -shrinkPower))
+	p.shortened = true
+}
+
+// overshot after a step past the end.
+func (p *pace) overshot(progress float64) {
+	p.past, p.progressPast = p.step, progress
+	p.aim()
+}
+
+// aim at the end between here and what is known to lie past it: in proportion to
+// the progress, or half-way where that jumps.
+func (p *pace) aim() {
+	share := (1 - p.done) / (p.progressPast - p.done)
+	if math.IsInf(p.progressPast, 1) {
+		share = 0.5
+	}
+	p.step = p.past * math.Max(0.02, math.Min(0.98, share))
+}
+
+// accepted after a step that was taken.
+func (p *pace) accepted(off, progress, longest float64) {
+	taken := p.step
+	most := mostStretch
+	if p.shortened {
+		most = 1
+	}
+	stretch := safety * math.Pow(math.Max(off, 1e-9), -stretchPower)
+	p.step = math.Min(taken*math.Min(most, stretch), longest)
+	p.done, p.shortened = progress, false
+	if p.past -= taken; p.past > p.least { // else the end is not where it was taken to be
+		free := p.step
+		p.aim()
+		p.step = math.Min(p.step, free)
+	}
+}
