@@ -5,6 +5,7 @@ import (
 	"encoding/xml"
 	"fmt"
 	"regexp"
+	"slices"
 	"strconv"
 	"strings"
 
@@ -25,6 +26,12 @@ func patchChart(part []byte, values func(reference string) ([]cell, error)) ([]b
 			return nil, err
 		}
 	}
+	if bytes.Contains(part, []byte("<scatterChart>")) {
+		if part, err = mendScatter(part); err != nil {
+			return nil, err
+		}
+	}
+	part = darken(part)
 	if part, err = cacheText(part, values); err != nil {
 		return nil, err
 	}
@@ -68,11 +75,58 @@ func anchorBySize(part []byte) ([]byte, error) {
 	return anchored.ReplaceAll(part, []byte(`<xdr:oneCellAnchor>$1<xdr:ext cx="$2" cy="$3"></xdr:ext>$4</xdr:oneCellAnchor>`)), nil
 }
 
+// paleLine is the colour that the chart writer gives to grid lines and axes.
+const paleLine = `<a:schemeClr val="tx1"><a:lumMod val="15000"></a:lumMod><a:lumOff val="85000"></a:lumOff></a:schemeClr>`
+
+// darken makes grid lines and axes visible on paper.
+func darken(part []byte) []byte {
+	return bytes.ReplaceAll(part, []byte(paleLine), []byte(`<a:srgbClr val="`+gridInk+`"></a:srgbClr>`))
+}
+
+var (
+	acrossText   = regexp.MustCompile(`<xVal><strRef><f>([^<]*)</f></strRef></xVal>`)
+	acrossNumber = `<xVal><numRef><f>$1</f><numCache><formatCode></formatCode></numCache></numRef></xVal>`
+	categoryOnly = []byte(`<auto val="1"></auto><lblAlgn val="ctr"></lblAlgn><lblOffset val="100"></lblOffset><noMultiLvlLbl val="0"></noMultiLvlLbl>`)
+)
+
+// logWords stand in the title of every logarithmic axis.
+const logWords = "(logarithmic axis)"
+
+// mendScatter makes the values along the horizontal axis numbers, takes away what
+// only an axis of categories has, and makes the axis logarithmic where its title
+// says so.
+func mendScatter(part []byte) ([]byte, error) {
+	if series, found := bytes.Count(part, []byte("<ser>")), len(acrossText.FindAll(part, -1)); series != found {
+		return nil, fmt.Errorf("%d series of points, %d of them as expected", series, found)
+	}
+	part = acrossText.ReplaceAll(part, []byte(acrossNumber))
+	start, end := bytes.Index(part, []byte("<valAx>")), bytes.Index(part, []byte("</valAx>"))
+	if start < 0 || end < start {
+		return nil, fmt.Errorf("no horizontal axis")
+	}
+	before, axis, after := part[:start], part[start:end], part[end:]
+	axis, err := replaceOnce(axis, string(categoryOnly), `<crossBetween val="midCat"></crossBetween>`)
+	if err != nil {
+		return nil, err
+	}
+	if bytes.Contains(axis, []byte(logWords)) {
+		if axis, err = replaceOnce(axis, "<scaling>", `<scaling><logBase val="10"></logBase>`); err != nil {
+			return nil, err
+		}
+	}
+	return slices.Concat(before, axis, after), nil
+}
+
 var barFill = regexp.MustCompile(`(</tx><spPr><a:solidFill><a:srgbClr val="[0-9A-F]{6}"></a:srgbClr></a:solidFill>)</spPr>`)
+
+// noBar is how the chart writer leaves a bar that carries others and is not seen.
+const noBar = `</tx><spPr><a:solidFill><a:srgbClr val="` + unseen + `"></a:srgbClr></a:solidFill></spPr>`
 
 // outlineBars draws a dark line around every bar: some of the hues are pale.
 func outlineBars(part []byte) ([]byte, error) {
-	if series, fills := bytes.Count(part, []byte("<ser>")), len(barFill.FindAll(part, -1)); series != fills {
+	empty := bytes.Count(part, []byte(noBar))
+	part = bytes.ReplaceAll(part, []byte(noBar), []byte(`</tx><spPr><a:noFill></a:noFill></spPr>`))
+	if series, fills := bytes.Count(part, []byte("<ser>")), len(barFill.FindAll(part, -1)); series != fills+empty {
 		return nil, fmt.Errorf("%d series of bars, %d of them filled as expected", series, fills)
 	}
 	line := `${1}<a:ln w="9525"><a:solidFill><a:srgbClr val="` + darkInk + `"></a:srgbClr></a:solidFill></a:ln></spPr>`

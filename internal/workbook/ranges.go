@@ -1,9 +1,245 @@
 package workbook
 
+import (
+	"fmt"
+	"math"
+
+	"parch/internal/spread"
+	"parch/internal/study"
+)
+
+// Columns of the ranges, one row per route in the order of Compare.
+const (
+	rangeChance = 3 + iota
+	rangeSure
+	rangeWater // low, median, high
+	rangeLitre = rangeWater + 3
+	rangeHours = rangeLitre + 3
+	rangeShare = rangeHours + 3
+	rangeRank  = rangeShare + 1
+)
+
+const notDrawn = "not drawn"
+
 func (l *layout) ranges() *grid {
-	g := newGrid(sheetRanges, "How sure the figures are. Values of the program; they change only by a new run.",
-		tabResult, checkCell(), 26, 30, 14, 14, 14, 14)
-	g.mixed, g.frozenRows = true, frameRows
-	l.banner(g, frameRows+2)
+	g := newGrid(sheetRanges, "How sure the figures are, what moves them, and where the choice turns. Values of the program; ranks and the cost against litres a month follow the prices.",
+		tabResult, checkCell(), 28, 34, 12, 12, 12, 12, 12, 12, 12, 12, 12, 12, 12, 12, 12)
+	g.mixed, g.frozenRows, g.frozenColumns = true, frameRows, 2
+	l.banner(g, frameRows+1)
+	l.rangeBlock(g)
+	l.rangeCharts(g)
+	l.moverBlock(g)
+	l.breakEvenBlock(g)
+	l.volumeBlocks(g)
+	l.frontBlock(g)
+	l.whatIfBlocks(g)
 	return g
+}
+
+// below is the first row of a new block, under charts too.
+func (g *grid) below() int { return max(g.last(), g.drawnTo()) + 2 }
+
+func (l *layout) rangeBlock(g *grid) {
+	three := func(name, unit string) []column {
+		return []column{{name + ", 5 %", unit}, {name + ", median", unit}, {name + ", 95 %", unit}}
+	}
+	columns := []column{{name: "Lot"}, {name: "Route id"}, {"Chance of target", "%"}, {name: "Sure enough"}}
+	columns = append(columns, three("Water", "mg/kg")...)
+	columns = append(columns, three("Cost per litre", l.money("L"))...)
+	columns = append(columns, three("Hours", "h")...)
+	columns = append(columns, column{"Cheapest in draws", "%"}, column{"Rank where sure enough", "1"})
+	name := fmt.Sprintf("Nine draws in ten lie between 5 %% and 95 %%. Sure enough: a chance of at least %.0f %%", 100*l.report.Job.Assurance)
+	if l.report.Draws == 0 {
+		name = "Ranges and chances: not drawn in this run"
+	}
+	first := g.table(g.next(), name, columns)
+	l.rangeRows = rows{first, first + len(l.routes) - 1}
+	formats := l.rangeFormats()
+	for i, r := range l.routes {
+		l.rangeRow(g, i, r, formats)
+	}
+	l.noRoutes(g, first, len(l.routes))
+	if !l.rangeRows.empty() {
+		place := fmt.Sprintf("D%d:D%d", first, l.rangeRows.last)
+		g.flags = append(g.flags, flag{place, fmt.Sprintf(`$D%d="yes"`, first), pass}, flag{place, fmt.Sprintf(`$D%d="no"`, first), warn})
+	}
+}
+
+// rangeFormats are the number formats of water, cost and hours.
+func (l *layout) rangeFormats() [3]string {
+	var all [3][]float64
+	for _, r := range l.routes {
+		for i, b := range r.bands() {
+			all[i] = append(all[i], tidy(b.Median))
+		}
+	}
+	return [3]string{formatFor(all[0]...), moneyFormat, formatFor(all[2]...)}
+}
+
+// bands are water (mg/kg), cost per litre and hours; NaN where not drawn.
+func (r *routeModel) bands() [3]spread.Band {
+	none := spread.Band{Low: math.NaN(), Median: math.NaN(), High: math.NaN()}
+	if r.Range == nil {
+		return [3]spread.Band{none, none, none}
+	}
+	water, litre := r.Range.Water, none
+	if r.Range.CostPerLitre != nil {
+		litre = *r.Range.CostPerLitre
+	}
+	return [3]spread.Band{{Low: water.Low * mgPerKg, Median: water.Median * mgPerKg, High: water.High * mgPerKg}, litre, r.Range.Hours}
+}
+
+// chance in per cent; NaN where there is none.
+func (r *routeModel) chance() float64 {
+	if r.Range == nil || r.Range.Chance == nil {
+		return math.NaN()
+	}
+	return 100 * *r.Range.Chance
+}
+
+// sure says whether the chance is enough for a route to be recommended.
+func (r *routeModel) sure(assurance float64) string {
+	switch c := r.chance(); {
+	case math.IsNaN(c):
+		return notDrawn
+	case tidy(c) >= tidy(100*assurance):
+		return "yes"
+	}
+	return "no"
+}
+
+func (l *layout) rangeRow(g *grid, i int, r *routeModel, formats [3]string) {
+	row := l.rangeRows.at(i)
+	g.putRow(row, text(words, r.lot.Job.Name), text(words, r.ID), finite(r.chance(), "%", "0.0"),
+		text(program, r.sure(l.report.Job.Assurance)))
+	units := [3]string{"mg/kg", l.money("L"), "h"}
+	for k, b := range r.bands() {
+		for j, v := range []float64{b.Low, b.Median, b.High} {
+			g.put(rangeWater+3*k+j, row, finite(v, units[k], formats[k]))
+		}
+	}
+	share := math.NaN()
+	if r.Range != nil {
+		share = 100 * r.Range.CheapestShare
+	}
+	g.put(rangeShare, row, finite(share, "%", "0.0"))
+	var rank any = ""
+	if r.rank > 0 && r.sure(l.report.Job.Assurance) != "no" {
+		rank = float64(r.rank)
+	}
+	g.put(rangeRank, row, derived(fmt.Sprintf(`IF(D%d="no","",%s)`, row, on(sheetCompare, at(compareRank, l.compareRows.at(i)))), rank).shown("0"))
+}
+
+// moverBlock lists the inputs that move the results of the route to take.
+func (l *layout) moverBlock(g *grid) {
+	row := g.table(g.below(), "What moves the result of the route to take: rank correlation, -1 to 1, the strongest first",
+		[]column{{name: "Lot"}, {name: "Route id"}, {name: "Result"}, {"Correlation", "1"}, {name: "Input"}})
+	headAcross(g, row-1, 5, 8, "Input")
+	headAcross(g, row-1, 9, 15, "Its spread rests on")
+	start := row
+	for _, lot := range l.lots {
+		best := lot.Best()
+		if best == nil || best.Range == nil {
+			continue
+		}
+		for _, m := range best.Range.Movers {
+			g.putRow(row, text(words, lot.Job.Name), text(words, best.ID), text(words, m.Of), number(m.Correlation, "1").shown("0.00"))
+			g.across(5, 8, row, words, m.Input)
+			g.across(9, 15, row, words, m.Why)
+			row++
+		}
+	}
+	if row == start {
+		g.put(1, row, text(plain, notDrawn))
+	}
+}
+
+// headAcross is a heading over several columns of running text.
+func headAcross(g *grid, row, first, last int, s string) { g.across(first, last, row, heading, s) }
+
+func (l *layout) breakEvenBlock(g *grid) {
+	row := g.table(g.below(), "Break-evens: where the choice turns, all else as in the job",
+		[]column{{name: "Lot"}, {name: "Question"}, {"Now", "1"}, {"Turns at", "1"}, {"Searched from", "1"}, {"Searched to", "1"}, {name: "Unit"}})
+	headAcross(g, row-1, 8, 15, "Answer")
+	start := row
+	for _, lot := range l.lots {
+		for _, b := range lot.BreakEvens {
+			unit := b.Unit
+			if unit == "" {
+				unit = "1"
+			}
+			format := formatFor(tidy(b.Now), tidy(b.At), tidy(b.From), tidy(b.To))
+			g.putRow(row, text(words, lot.Job.Name), text(words, b.What), finite(b.Now, unit, format), finite(b.At, unit, format),
+				finite(b.From, unit, format), finite(b.To, unit, format), text(plain, unit))
+			g.across(8, 15, row, words, b.Answer)
+			row++
+		}
+	}
+	if row == start {
+		g.put(1, row, text(plain, "none were sought in this run"))
+	}
+}
+
+func (l *layout) frontBlock(g *grid) {
+	row := g.table(g.below(), "Trade-off of cost, attended time, waste and energy: no other route is better in one of them and no worse in the rest, or the one that is, is named",
+		[]column{{name: "Lot"}, {name: "Route id"}, {"Cost per litre", l.money("L")}, {"Hours attended", "h"}, {"Waste", "kg"}, {"Energy", "kWh"}, {name: "State"}})
+	headAcross(g, row-1, 8, 15, "No worse in all four and better in one")
+	start := row
+	for _, lot := range l.lots {
+		for _, p := range lot.Front {
+			state := "on the front"
+			if p.DominatedBy != "" {
+				state = "beaten"
+			}
+			g.putRow(row, text(words, lot.Job.Name), text(words, p.ID), finite(p.CostPerLitre, l.money("L"), moneyFormat),
+				finite(p.HoursAttended, "h", decimals(2)), finite(p.WasteKg, "kg", decimals(3)), finite(p.EnergyKWh, "kWh", decimals(2)), text(plain, state))
+			g.across(8, 15, row, words, p.DominatedBy)
+			row++
+		}
+	}
+	if row == start {
+		g.put(1, row, text(plain, "none in this run"))
+	}
+}
+
+// mostWhatIf columns of targets fit on the sheet.
+const mostWhatIf = 12
+
+func (l *layout) whatIfBlocks(g *grid) {
+	for _, lot := range l.lots {
+		if w := lot.WhatIf; w != nil && len(w.Target) > 0 && len(w.StartWater) > 0 {
+			l.whatIfBlock(g, lot, w)
+		}
+	}
+}
+
+// whatIfBlock shows the cheapest route over start water and target: the routes,
+// then their costs.
+func (l *layout) whatIfBlock(g *grid, lot *lotModel, w *study.WhatIf) {
+	targets := w.Target[:min(len(w.Target), mostWhatIf)]
+	block := func(name string, put func(row, column int, c study.WhatIfCell)) {
+		columns := []column{{name: "Lot"}, {"Start water", "mg/kg"}}
+		for _, t := range targets {
+			columns = append(columns, column{fmt.Sprintf("to %s", significant(t*mgPerKg)), "mg/kg"})
+		}
+		row := g.table(g.below(), name, columns)
+		format := formatFor(each(w.StartWater, func(x float64) float64 { return tidy(x * mgPerKg) })...)
+		for i, start := range w.StartWater {
+			g.putRow(row, text(words, lot.Job.Name), number(start*mgPerKg, "mg/kg").shown(format))
+			for j := range targets {
+				put(row, 3+j, w.Cells[i][j])
+			}
+			row++
+		}
+	}
+	block(fmt.Sprintf("Lot %d, what if: the cheapest route for other starts and targets", lot.no), func(row, column int, c study.WhatIfCell) {
+		s := c.ID
+		if s == "" {
+			s = c.Note
+		}
+		g.put(column, row, text(program, s))
+	})
+	block(fmt.Sprintf("Lot %d, what if: its cost per litre, %s", lot.no, l.money("L")), func(row, column int, c study.WhatIfCell) {
+		g.put(column, row, finite(c.CostPerLitre, l.money("L"), moneyFormat))
+	})
 }

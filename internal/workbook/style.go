@@ -36,6 +36,8 @@ const (
 	black   = "000000"
 	rule    = "8A8A8A" // outline of cells
 	darkInk = "404040" // axis text and outlines of charts
+	gridInk = "A6A6A6" // grid lines and axes of charts
+	unseen  = "FEFEFE" // stands for no fill: a bar that only carries others
 )
 
 var paints = map[look]paint{

@@ -89,6 +89,7 @@ type layout struct {
 	litreRows     rows // cost per litre
 	rankRows      rows // target and rank
 	compareRows   rows
+	rangeRows     rows // ranges
 }
 
 // rows is a run of rows; it is empty where last < first.
