@@ -8,19 +8,21 @@ import (
 	"slices"
 	"strings"
 	"testing"
+
+	"github.com/xuri/excelize/v2"
 )
 
 // childOrder is the order of children that the schema of the file format
 // prescribes (ISO/IEC 29500-1, DrawingML charts; from memory), as far as charts
 // here use it.
 var childOrder = map[string][]string{
-	"chartSpace": {"date1904", "lang", "roundedCorners", "AlternateContent", "style", "clrMapOvr", "pivotFmts", "protection", "chart", "spPr", "txPr", "externalData", "printSettings", "userShapes"},
-	"chart":      {"title", "autoTitleDeleted", "pivotFmts", "view3D", "floor", "sideWall", "backWall", "plotArea", "legend", "plotVisOnly", "dispBlanksAs", "showDLblsOverMax"},
-	"title":      {"tx", "layout", "overlay", "spPr", "txPr"},
-	"barChart":   {"barDir", "grouping", "varyColors", "ser", "dLbls", "gapWidth", "overlap", "serLines", "axId"},
+	"chartSpace":   {"date1904", "lang", "roundedCorners", "AlternateContent", "style", "clrMapOvr", "pivotFmts", "protection", "chart", "spPr", "txPr", "externalData", "printSettings", "userShapes"},
+	"chart":        {"title", "autoTitleDeleted", "pivotFmts", "view3D", "floor", "sideWall", "backWall", "plotArea", "legend", "plotVisOnly", "dispBlanksAs", "showDLblsOverMax"},
+	"title":        {"tx", "layout", "overlay", "spPr", "txPr"},
+	"barChart":     {"barDir", "grouping", "varyColors", "ser", "dLbls", "gapWidth", "overlap", "serLines", "axId"},
 	"scatterChart": {"scatterStyle", "varyColors", "ser", "dLbls", "axId"},
-	"lineChart":  {"grouping", "varyColors", "ser", "dLbls", "dropLines", "hiLowLines", "upDownBars", "marker", "smooth", "axId"},
-	"ser":        {"idx", "order", "tx", "spPr", "invertIfNegative", "pictureOptions", "marker", "dPt", "dLbls", "trendline", "errBars", "cat", "val", "xVal", "yVal", "smooth", "shape"},
+	"lineChart":    {"grouping", "varyColors", "ser", "dLbls", "dropLines", "hiLowLines", "upDownBars", "marker", "smooth", "axId"},
+	"ser":          {"idx", "order", "tx", "spPr", "invertIfNegative", "pictureOptions", "marker", "dPt", "dLbls", "trendline", "errBars", "cat", "val", "xVal", "yVal", "smooth", "shape"},
 	"catAx": {"axId", "scaling", "delete", "axPos", "majorGridlines", "minorGridlines", "title", "numFmt", "majorTickMark", "minorTickMark", "tickLblPos",
 		"spPr", "txPr", "crossAx", "crosses", "crossesAt", "auto", "lblAlgn", "lblOffset", "noMultiLvlLbl"},
 	"valAx": {"axId", "scaling", "delete", "axPos", "majorGridlines", "minorGridlines", "title", "numFmt", "majorTickMark", "minorTickMark", "tickLblPos",
@@ -89,19 +91,17 @@ func inOrder(t *testing.T, where string, e element) {
 	}
 }
 
-// Each lot with routes has a chart of its costs and one of its water, and what
-// they draw is there.
+// Each lot with routes has its charts, and what they draw is there: every cell of
+// every reference is filled.
 func TestChartsDrawWhatIsThere(t *testing.T) {
-	r := demo(t)
-	b := readBook(t, written(t, r))
+	l := layoutOf(t)
+	b := readBook(t, written(t, demo(t)))
 	all := charts(t, b)
 	want := 0
-	for _, lot := range r.Lots {
-		if len(lot.Routes) > 0 {
-			want += 2
-		}
+	for _, g := range l.grids {
+		want += len(g.charts)
 	}
-	if len(all) != want {
+	if len(all) != want || want < 3*len(l.lots) {
 		t.Errorf("%d charts, want %d", len(all), want)
 	}
 	for name, e := range all {
@@ -111,25 +111,51 @@ func TestChartsDrawWhatIsThere(t *testing.T) {
 			if !ok {
 				to = from
 			}
-			if !anyFilled(t, b.cells[sheet], from, to) {
-				t.Errorf("%s draws %s, where nothing is", name, f.Text)
+			if !allFilled(t, b.cells[strings.Trim(sheet, "'")], from, to) {
+				t.Errorf("%s draws %s, where something is missing", name, f.Text)
 			}
 		}
 		if n := len(e.all("ptCount")); n != len(e.all("f")) {
 			t.Errorf("%s: %d references, %d of them with values", name, len(e.all("f")), n)
+		}
+		if n := len(e.all("ser")); n == 0 || n > 10 {
+			t.Errorf("%s draws %d series", name, n)
 		}
 		if len(e.all("logBase")) == 0 && len(e.all("barChart")) == 0 {
 			t.Errorf("%s is neither a chart of bars nor on a log axis", name)
 		}
 	}
 	size := regexp.MustCompile(`<xdr:oneCellAnchor><xdr:from>[^T]*?</xdr:from><xdr:ext cx="\d{7}" cy="\d{7,8}"></xdr:ext><xdr:graphicFrame`)
-	drawing := string(b.parts["xl/drawings/drawing1.xml"])
-	if n := len(size.FindAllString(drawing, -1)); n != want || strings.Contains(drawing, "twoCellAnchor") {
-		t.Errorf("%d charts are anchored by their size, want %d", n, want)
+	anchored, described := 0, 0
+	for name, part := range b.parts {
+		if strings.HasPrefix(name, "xl/drawings/drawing") {
+			anchored += len(size.FindAllString(string(part), -1))
+			described += strings.Count(string(part), ` descr="`)
+		}
+		if bytes.Contains(part, []byte("twoCellAnchor")) {
+			t.Errorf("%s has a chart that is not anchored by its size", name)
+		}
 	}
-	if n := strings.Count(drawing, ` descr="`); n != want {
-		t.Errorf("%d charts have an alternative text, want %d", n, want)
+	if anchored != want || described != want {
+		t.Errorf("of %d charts %d are anchored by their size, %d have an alternative text", want, anchored, described)
 	}
+}
+
+func allFilled(t *testing.T, cells map[string]stored, from, to string) bool {
+	t.Helper()
+	c1, r1, err1 := excelize.CellNameToCoordinates(from)
+	c2, r2, err2 := excelize.CellNameToCoordinates(to)
+	if err1 != nil || err2 != nil {
+		t.Fatalf("range %s:%s", from, to)
+	}
+	for r := r1; r <= r2; r++ {
+		for c := c1; c <= c2; c++ {
+			if !filled(cells[at(c, r)]) {
+				return false
+			}
+		}
+	}
+	return true
 }
 
 // No chart covers a cell with content or another chart.

@@ -7,14 +7,15 @@ import (
 
 // Columns of Compare.
 const (
-	compareReaches = 3
-	compareWater   = 4
-	compareBatch   = 6
-	compareLitre   = 7
-	compareRank    = 8
-	compareLimit   = 15
-	compareTarget  = 16
-	comparePlotted = 17
+	compareReaches  = 3
+	compareWater    = 4
+	compareAttended = 5
+	compareBatch    = 6
+	compareLitre    = 7
+	compareRank     = 8
+	compareLimit    = 15
+	compareTarget   = 16
+	comparePlotted  = 17
 )
 
 func (l *layout) compare() *grid {

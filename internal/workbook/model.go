@@ -1,6 +1,7 @@
 package workbook
 
 import (
+	"cmp"
 	"errors"
 	"fmt"
 	"slices"
@@ -218,3 +219,8 @@ func before(list []*routeModel, comes func(*routeModel) bool) (n int) {
 func abs(x float64) float64 { return max(x, -x) }
 
 func float(d decimal.Decimal) float64 { return tidy(d.InexactFloat64()) }
+
+// sortBy sorts by a key, equal ones in the order they have.
+func sortBy[T any](list []T, key func(T) float64) {
+	slices.SortStableFunc(list, func(a, b T) int { return cmp.Compare(key(a), key(b)) })
+}

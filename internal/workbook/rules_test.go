@@ -28,7 +28,7 @@ var (
 )
 
 var allowedFunctions = []string{"ABS", "AND", "COUNT", "COUNTIF", "COUNTIFS", "IF", "IFERROR", "INDEX", "ISERROR", "ISNA",
-	"ISNUMBER", "MATCH", "MAX", "NOT", "ROUND", "ROWS", "SUM", "SUMIFS", "SUMPRODUCT"}
+	"ISNUMBER", "MATCH", "MAX", "NOT", "ROUND", "ROWS", "SMALL", "SUM", "SUMIFS", "SUMPRODUCT"}
 
 // eachFormula calls f for every formula of the demonstration's workbook.
 func eachFormula(t *testing.T, b *book, f func(sheet, place, formula string)) {

@@ -20,6 +20,7 @@ const (
 	pass         // flag
 	warn         // flag
 	fail         // flag
+	field        // left open, to be filled in by hand
 )
 
 // paint is one row of the style table. Colours are RRGGBB.
@@ -55,6 +56,7 @@ var paints = map[look]paint{
 	pass:    {ink: "0E5A43", paper: "DCEDE4", bold: true, size: 10},
 	warn:    {ink: "6B4A00", paper: "F6EBCB", bold: true, size: 10},
 	fail:    {ink: "7A1B12", paper: "F5DFD8", bold: true, size: 10},
+	field:   {ink: black, paper: white, size: 10, outlined: true, wrap: true},
 }
 
 // typeface of the whole workbook.
