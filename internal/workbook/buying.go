@@ -1,9 +1,158 @@
 package workbook
 
+import (
+	"fmt"
+	"slices"
+	"strings"
+
+	"parch/internal/costs"
+)
+
+// Columns of Buying.
+const (
+	buyNeed   = 3 // process, losses, safety stock, on hand, to buy
+	buyPack   = 9
+	buyPacks  = 10
+	buyOrder  = 11
+	buyThere  = 12
+	buyCost   = 13
+	buyFields = 15 // two, left open
+)
+
 func (l *layout) buying() *grid {
-	g := newGrid(sheetBuying, "What to order for a year of the recommended routes, all lots together.",
-		tabResult, checkCell(), 26, 30, 14, 14, 14, 14)
-	g.mixed, g.frozenRows = true, frameRows
-	l.banner(g, frameRows+2)
+	g := newGrid(sheetBuying, "What to order for a year of the recommended routes, all lots together. Values of the program: after an edit of an input or a price the list is that of the run, no longer that of the sheet.",
+		tabResult, checkCell(), 22, 44, 11, 10, 10, 10, 10, 8, 10, 8, 9, 9, 12, 22, 14, 14)
+	g.mixed, g.frozenRows, g.frozenColumns = true, frameRows, 1
+	l.banner(g, frameRows+1)
+	list := l.report.Buying.Purchases
+	if len(list) == 0 {
+		g.put(1, g.next(), text(plain, "Nothing has to be bought: no lot has a route that reaches its target, or the lots are dry."))
+		return g
+	}
+	first := g.table(g.next(), fmt.Sprintf("Order list; days count from the earliest order, the first batch is on day %d", l.report.Buying.FirstBatchDay),
+		[]column{{name: "Item"}, {name: "Specification"}, {"Process", "1"}, {"Losses", "1"}, {"Safety stock", "1"}, {"On hand", "1"}, {"To buy", "1"}, {name: "Unit"},
+			{"Pack", "1"}, {"Packs", "1"}, {"Order on day", "1"}, {"There by day", "1"}, {"Cost", l.currency()}, {name: "Price"}, {name: "Ordered by, date"}, {name: "Received by, date"}})
+	row := first
+	total := 0.0
+	for i := range list {
+		row = l.purchaseRows(g, row, &list[i], &total)
+	}
+	g.put(2, row, text(block, "All orders"))
+	g.put(buyCost, row, derived(fmt.Sprintf("SUM(%s:%s)", at(buyCost, first), at(buyCost, row-1)), total).in(l.currency()).shown(moneyFormat))
+	l.orderNotes(g, list)
 	return g
+}
+
+// purchaseRows writes a row for each order of an item, or one where there is none.
+func (l *layout) purchaseRows(g *grid, row int, p *costs.Purchase, total *float64) int {
+	unit := symbol(p.Unit)
+	amounts := []float64{p.Process, p.Losses, p.Safety, p.Have, p.ToBuy}
+	for i := range max(len(p.Orders), 1) {
+		if i == 0 {
+			g.putRow(row, text(words, p.Item), text(words, orWords(p.Specification, p.Label)))
+			for k, v := range amounts {
+				g.put(buyNeed+k, row, number(v, unit).shown(formatFor(each(amounts, tidy)...)))
+			}
+		}
+		g.put(buyNeed+5, row, text(plain, unit))
+		for c := buyFields; c <= buyFields+1; c++ {
+			g.put(c, row, blank(field))
+		}
+		if i < len(p.Orders) {
+			l.orderCells(g, row, p, p.Orders[i], unit)
+			*total += float(p.Orders[i].Cost)
+		} else {
+			g.put(buyCost+1, row, text(words, p.Why))
+		}
+		row++
+	}
+	return row
+}
+
+func (l *layout) orderCells(g *grid, row int, p *costs.Purchase, o costs.Order, unit string) {
+	size := float(o.Pack.Size)
+	if o.Pack.AnyAmount() {
+		size = float(o.Amount)
+	}
+	g.put(buyPack, row, number(size, unit).shown(formatFor(size)))
+	g.put(buyPacks, row, count(o.Count))
+	g.put(buyOrder, row, count(o.OrderDay))
+	g.put(buyThere, row, count(o.NeedDay))
+	g.put(buyCost, row, number(float(o.Cost), l.currency()).shown(moneyFormat))
+	mark := string(o.Pack.Flag)
+	if o.Pack.Date != "" {
+		mark = strings.TrimPrefix(mark+", of "+o.Pack.Date, ", ")
+	}
+	g.put(buyCost+1, row, text(words, orWords(mark, "own")))
+}
+
+// orderNotes says of each item why these packs, how it is kept and carried.
+func (l *layout) orderNotes(g *grid, list []costs.Purchase) {
+	row := g.next()
+	g.put(1, row, text(block, "Why these packs, how to keep them, how they travel"))
+	g.put(1, row+1, text(heading, "Item"))
+	headAcross(g, row+1, 2, 16, "Note")
+	row += 2
+	for i := range list {
+		if s := orderNote(&list[i]); s != "" {
+			g.put(1, row, text(words, list[i].Item))
+			g.across(2, 16, row, words, s)
+			row++
+		}
+	}
+	if flags := l.report.Buying.Flags; len(flags) > 0 {
+		row = g.next()
+		g.put(1, row, text(block, "Over a limit of the site"))
+		for i, s := range flags {
+			g.across(1, 16, row+1+i, warn, s)
+		}
+	}
+}
+
+func orderNote(p *costs.Purchase) string {
+	unit := symbol(p.Unit)
+	parts := []string{p.Why}
+	if p.Leftover > 0 && len(p.Orders) > 0 {
+		parts = append(parts, fmt.Sprintf("%s %s left at the end of the year", significant(p.Leftover), unit))
+	}
+	for _, o := range p.Orders {
+		if o.Every > 0 {
+			parts = append(parts, fmt.Sprintf("delivered %d packs of %s %s every %d days", o.Each, significant(float(o.Pack.Size)), unit, o.Every))
+		}
+		if o.Pack.ShelfDays > 0 {
+			parts = append(parts, fmt.Sprintf("keeps %d days after opening", o.Pack.ShelfDays))
+		}
+		if o.Pack.Supplier != "" {
+			parts = append(parts, "offer of "+o.Pack.Supplier)
+		}
+	}
+	if slices.ContainsFunc(p.Orders, func(o costs.Order) bool { return o.Pack.LeadDays < 0 }) {
+		parts = append(parts, "lead time not given, taken as 0 days")
+	}
+	if p.Peak > 0 {
+		parts = append(parts, fmt.Sprintf("at most %s %s in store at once", significant(p.Peak), unit))
+	}
+	if s := keeping(p); s != "" {
+		parts = append(parts, s)
+	}
+	if t := p.Transport; t.UN != "" {
+		parts = append(parts, fmt.Sprintf("UN %s, class %s, packing group %s (from memory: the supplier's safety data sheet decides)", t.UN, t.Class, t.Group))
+	}
+	return sentence(strings.Join(slices.DeleteFunc(parts, func(s string) bool { return s == "" }), "; "))
+}
+
+// keeping is how an item is stored (common practice, no source).
+func keeping(p *costs.Purchase) string {
+	class := p.Transport.Class
+	switch {
+	case strings.HasPrefix(p.Item, "sieve-") || p.Item == "alumina" || p.Item == "silica-gel":
+		return "keep closed and dry: an open tin takes up water from the air"
+	case strings.HasPrefix(class, "4.3"):
+		return "keep dry, closed and away from water"
+	case strings.HasPrefix(class, "3"):
+		return "keep in the flammables store, earthed when poured"
+	case strings.HasPrefix(class, "8"):
+		return "keep closed and dry, with the corrosives"
+	}
+	return ""
 }
