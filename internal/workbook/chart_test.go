@@ -162,13 +162,15 @@ func allFilled(t *testing.T, cells map[string]stored, from, to string) bool {
 func TestChartsCoverNothing(t *testing.T) {
 	for _, g := range layoutOf(t).grids {
 		for i, p := range g.charts {
-			for row := p.row; row < p.row+p.rowsTaken(); row++ {
-				if row <= len(g.rows) && len(g.rows[row-1]) > 0 {
-					t.Errorf("%s: chart %d covers row %d", g.name, i+1, row)
+			for row := p.row; row <= g.under(p); row++ {
+				for c := p.column; c < p.column+columnsUnder(g, p) && row <= len(g.rows) && c <= len(g.rows[row-1]); c++ {
+					if x := g.rows[row-1][c-1]; x.value != nil || x.formula != "" {
+						t.Errorf("%s: chart %d covers %s", g.name, i+1, at(c, row))
+					}
 				}
 			}
 			for _, q := range g.charts[i+1:] {
-				if p.row+p.rowsTaken() >= q.row && p.column+columnsUnder(g, p) > q.column {
+				if q.row <= g.under(p) && p.row <= g.under(q) && p.column+columnsUnder(g, p) > q.column && q.column+columnsUnder(g, q) > p.column {
 					t.Errorf("%s: charts at rows %d and %d overlap", g.name, p.row, q.row)
 				}
 			}

@@ -4,6 +4,7 @@ import (
 	"bytes"
 	"encoding/xml"
 	"fmt"
+	"html"
 	"regexp"
 	"slices"
 	"strconv"
@@ -197,7 +198,7 @@ func points(cells []cell) string {
 // valuesAt looks up the cells of a reference such as Costs!$D$5:$D$9. A cell that
 // does not exist is an error: the chart would draw nothing.
 func (w *file) valuesAt(reference string) ([]cell, error) {
-	sheet, place, ok := strings.Cut(reference, "!")
+	sheet, place, ok := strings.Cut(html.UnescapeString(reference), "!")
 	if !ok {
 		return nil, fmt.Errorf("%q names no sheet", reference)
 	}

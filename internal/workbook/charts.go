@@ -18,19 +18,25 @@ type placed struct {
 }
 
 const (
-	rowPixels   = 20 // height of a row without content
 	rowPoints   = 15.0
 	pixelPoints = 0.75
 )
 
-// rowsTaken is the number of rows under a chart.
-func (p placed) rowsTaken() int { return (p.height + rowPixels - 1) / rowPixels }
+// under is the last row that a chart covers.
+func (g *grid) under(p placed) int {
+	left := float64(p.height) * pixelPoints
+	row := p.row
+	for ; left > 0; row++ {
+		left -= g.span(row, row)
+	}
+	return row - 1
+}
 
-// drawnTo is the last row that a chart covers.
+// drawnTo is the last row that a chart covers, or the one below where it ends.
 func (g *grid) drawnTo() int {
 	last := 0
 	for _, p := range g.charts {
-		last = max(last, p.row+p.rowsTaken())
+		last = max(last, g.under(p)+1)
 	}
 	return last
 }

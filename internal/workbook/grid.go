@@ -102,6 +102,7 @@ type grid struct {
 	printed       []rows // what is printed; all rows where there is none
 	portrait      bool
 	onePage       bool // the whole sheet on one printed page
+	percent       int  // scale of printing; 0: as wide as the page
 	limits        []limit
 	flags         []flag
 	charts        []placed

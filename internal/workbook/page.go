@@ -19,7 +19,7 @@ const (
 
 // view sets what stands before the rows in the file: it must come before them.
 func (e *emitter) view(g *grid) error {
-	fit, colour, gridLines := true, g.tab, false
+	fit, colour, gridLines := g.percent == 0, g.tab, false
 	if err := e.file.SetSheetProps(g.name, &excelize.SheetPropsOptions{FitToPage: &fit, TabColorRGB: &colour}); err != nil {
 		return err
 	}
@@ -39,8 +39,12 @@ func (e *emitter) page(g *grid) error {
 	if g.onePage {
 		tall = 1
 	}
-	if err := e.file.SetPageLayout(g.name, &excelize.PageLayoutOptions{
-		Size: &size, Orientation: &orientation, FitToWidth: &wide, FitToHeight: &tall}); err != nil {
+	layout := &excelize.PageLayoutOptions{Size: &size, Orientation: &orientation, FitToWidth: &wide, FitToHeight: &tall}
+	if g.percent > 0 {
+		percent := uint(g.percent)
+		layout = &excelize.PageLayoutOptions{Size: &size, Orientation: &orientation, AdjustTo: &percent}
+	}
+	if err := e.file.SetPageLayout(g.name, layout); err != nil {
 		return err
 	}
 	side, foot := marginInches, footInches
@@ -65,7 +69,7 @@ func (e *emitter) printRange(g *grid) error {
 		areas[i] = sheet + fixed(1, r.first) + ":" + fixed(g.printColumns, r.last)
 	}
 	names := []excelize.DefinedName{{Name: "_xlnm.Print_Area", RefersTo: strings.Join(areas, ","), Scope: g.name}}
-	if g.frozenRows > 0 && !g.onePage {
+	if g.frozenRows > 0 && !g.onePage && g.percent == 0 {
 		first, last := g.titles()
 		names = append(names, excelize.DefinedName{Name: "_xlnm.Print_Titles",
 			RefersTo: fmt.Sprintf("%s$%d:$%d", sheet, first, last), Scope: g.name})
@@ -102,4 +106,25 @@ func (g *grid) scale() float64 {
 		width += w * pointsPerUnit
 	}
 	return min(1, printableWidth/width)
+}
+
+// The smaller of A4 and Letter, upright, within the margins. Points.
+const (
+	uprightWidth  = 595.3 - 2*72*marginInches
+	uprightHeight = 792 - 72*(marginInches+footInches)
+	reserve       = 0.94 // readers differ in the height of rows
+)
+
+// cardScale is the scale in per cent at which the largest part that is printed by
+// itself fits on a page.
+func (g *grid) cardScale() int {
+	width := 0.0
+	for _, w := range g.widths[:g.printColumns] {
+		width += w * pointsPerUnit
+	}
+	scale := min(1, uprightWidth/width)
+	for _, r := range g.printed {
+		scale = min(scale, uprightHeight*reserve/g.span(r.first, r.last))
+	}
+	return max(10, int(100*scale))
 }

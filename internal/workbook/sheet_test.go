@@ -17,7 +17,11 @@ func TestEverySheetPrintsAndProtects(t *testing.T) {
 		if sheet == sheetDecision {
 			tall, way = "1", "portrait"
 		}
-		for _, want := range []string{`orientation="` + way + `"`, `fitToWidth="1"`, `fitToHeight="` + tall + `"`, `fitToPage="true"`, `<sheetProtection`, `state="frozen"`, `<tabColor`, `showGridLines="false"`} {
+		fit := []string{`fitToWidth="1"`, `fitToHeight="` + tall + `"`, `fitToPage="true"`}
+		if sheet == sheetBenchCard {
+			way, fit = "portrait", []string{` scale="`}
+		}
+		for _, want := range append(fit, `orientation="`+way+`"`, `<sheetProtection`, `state="frozen"`, `<tabColor`, `showGridLines="false"`) {
 			if !strings.Contains(part, want) {
 				t.Errorf("%s: no %s", sheet, want)
 			}
@@ -27,8 +31,8 @@ func TestEverySheetPrintsAndProtects(t *testing.T) {
 		}
 	}
 	workbook := string(b.parts["xl/workbook.xml"])
-	onePage := 1
-	for name, n := range map[string]int{"_xlnm.Print_Titles": len(b.sheets) - onePage, "_xlnm.Print_Area": len(b.sheets)} {
+	withoutTitles := 2 // Decision and Bench card print on a page each
+	for name, n := range map[string]int{"_xlnm.Print_Titles": len(b.sheets) - withoutTitles, "_xlnm.Print_Area": len(b.sheets)} {
 		if got := strings.Count(workbook, name); got != n {
 			t.Errorf("%s stands %d times, want %d", name, got, n)
 		}

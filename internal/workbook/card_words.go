@@ -1,0 +1,285 @@
+package workbook
+
+import (
+	"fmt"
+	"math"
+	"slices"
+	"strings"
+
+	"parch/internal/quantity"
+	"parch/internal/routes"
+	"parch/internal/steps"
+)
+
+// cardWords are the texts of a bench card for one route.
+type cardWords struct {
+	stops, charge, settings, until []string
+	waste, never                   []string
+	expect                         []expected
+}
+
+// expected is what is to be seen at a time in a step.
+type expected struct {
+	step                                 string
+	hours, collectedML, water, pot, head float64 // h, mL, mg/kg, °C; NaN where the step has none
+}
+
+func (l *layout) cardWords(r *routeModel) cardWords {
+	w := cardWords{stops: l.stopChecks(r), waste: wasteWords(r), never: neverWords(r)}
+	several := len(r.Run.Outcomes) > 1
+	soaks, beds := 0, 0
+	for i := range r.Run.Outcomes {
+		o := &r.Run.Outcomes[i]
+		name := capital(string(o.Kind))
+		if several {
+			name = fmt.Sprintf("Step %d, %s", i+1, o.Kind)
+		}
+		sieve := ""
+		if o.Kind == steps.Soak || o.Kind == steps.Column {
+			sieve = itemAt(r.Run.Settings.Sieve, beds)
+			beds++
+		}
+		w.charge = append(w.charge, name+": "+l.chargeWords(r, o, sieve))
+		stirred := false
+		if o.Kind == steps.Soak {
+			stirred = itemAt(r.Run.Settings.Stirred, soaks)
+			soaks++
+		}
+		if s := settingWords(r, o, stirred); s != "" {
+			w.settings = append(w.settings, name+": "+s)
+		}
+		w.until = append(w.until, name+": "+oneLine(why(*o))+".")
+		w.expect = append(w.expect, expectations(name, o, expectPoints(r))...)
+	}
+	return w
+}
+
+func itemAt[T any](list []T, i int) (item T) {
+	if i < len(list) {
+		item = list[i]
+	}
+	return item
+}
+
+// mostStops are the checks before a start that fit on a card.
+const mostStops = 8
+
+func (l *layout) stopChecks(r *routeModel) []string {
+	var out []string
+	if p := r.lot.Job.Peroxide; p != nil {
+		out = append(out, fmt.Sprintf("Peroxide reading of %s: %s. Test again today; go on only below the site's limit of %s.", p.Date,
+			quantity.FormatConcentration(p.ReadingKgPerM3), quantity.FormatConcentration(l.report.Job.Site.PeroxideLimitKgPerM3)))
+	}
+	out = append(out, cautionTexts(r, "danger", "caution")...)
+	return out[:min(len(out), mostStops)]
+}
+
+func (l *layout) chargeWords(r *routeModel, o *steps.Outcome, sieve string) string {
+	lot := r.lot.Job
+	agent := l.agentName(o.Agent)
+	grams := quantity.Significant(o.AgentKg*1000, 3) + " g"
+	switch o.Kind {
+	case steps.Soak, steps.Column:
+		s := fmt.Sprintf("%s of %s", grams, agent)
+		if o.Kind == steps.Soak {
+			s += fmt.Sprintf(" (%s g/L) on %s", significant(o.Figure("dose")), litres(o.In))
+		} else {
+			s += fmt.Sprintf(" in %s, bed %s long", strings.ReplaceAll(o.Apparatus, "-", " "), quantity.FormatLength(o.Figure("bed length")))
+		}
+		if lot.SieveHistory != "" {
+			s += "; beads activated: " + lot.SieveHistory
+		} else if lot.SieveHistoryK > 0 {
+			s += "; beads activated at " + quantity.FormatTemperature(lot.SieveHistoryK)
+		}
+		if sieve == routes.Regenerate {
+			s += "; drained beads go to regeneration"
+		} else if sieve != "" {
+			s += "; beads are used once"
+		}
+		return s + "."
+	case steps.Salt, steps.Reactive:
+		return fmt.Sprintf("%s of %s on %s.", grams, agent, litres(o.In))
+	case steps.Buy:
+		return fmt.Sprintf("%s of dry grade, sealed.", quantity.FormatVolume(lot.BatchM3))
+	}
+	charges := o.Figure("still charges")
+	if charges > 1 {
+		return fmt.Sprintf("%s in %s charges.", litres(o.In), significant(charges))
+	}
+	return litres(o.In) + " in one charge."
+}
+
+func litres(lot steps.Lot) string { return quantity.FormatMass(lot.MassKg()) + " of the lot" }
+
+func (l *layout) agentName(key string) string {
+	if p, ok := l.report.Book[key]; ok && p.Label != "" {
+		return p.Label
+	}
+	return strings.ReplaceAll(key, "-", " ")
+}
+
+// settingFigures are the figures of a step that are set or watched, by kind.
+var settingFigures = map[steps.Kind][]string{
+	steps.Settle:   {"settling time"},
+	steps.Trap:     {"boiling temperature at the start", "heat-up, each charge", "reflux, each charge", "aqueous layer, each charge", "drainings, each charge"},
+	steps.Forerun:  {"equilibrium stages of the column", "boiling temperature at the start", "boiling temperature at the end", "heat-up, each charge", "drawing off, each charge", "volume drawn off, each charge"},
+	steps.Salt:     {"stirred or stood", "rinse"},
+	steps.Soak:     {"vessels", "liquid height", "temperature rise, no heat lost"},
+	steps.Column:   {"superficial velocity", "contact time, empty bed", "pump time", "first runnings to return", "pressure drop"},
+	steps.Reactive: {"charges", "heat-up, each charge", "reflux, each charge", "distillation, each charge", "heel", "hydrogen while drying"},
+}
+
+func settingWords(r *routeModel, o *steps.Outcome, stirred bool) string {
+	var parts []string
+	if o.Kind == steps.Soak {
+		way := "still"
+		if stirred {
+			way = "stirred"
+		}
+		parts = append(parts, fmt.Sprintf("%s for %s h", way, significant(o.HoursTotal-o.HoursAttended)))
+	}
+	for _, name := range settingFigures[o.Kind] {
+		if v := o.Figure(name); !math.IsNaN(v) && !math.IsInf(v, 0) && v != 0 {
+			parts = append(parts, strings.TrimSpace(fmt.Sprintf("%s %s %s", name, significant(v), unitOf(o, name))))
+		}
+	}
+	if o.Condenser.RunM3PerS > 0 {
+		parts = append(parts, fmt.Sprintf("cooling water %s L/min, warms by %s K", significant(o.Condenser.RunM3PerS*6e4), significant(o.Condenser.RunRiseK)))
+	}
+	if r.lot.Job.HeaterW > 0 && (o.Kind == steps.Trap || o.Kind == steps.Forerun || o.Kind == steps.Reactive) {
+		parts = append(parts, "heater "+quantity.FormatPower(r.lot.Job.HeaterW))
+	}
+	if len(parts) == 0 {
+		return ""
+	}
+	return strings.Join(parts, "; ") + "."
+}
+
+func unitOf(o *steps.Outcome, name string) string {
+	for _, f := range o.Figures {
+		if f.Name == name {
+			return f.Unit
+		}
+	}
+	return ""
+}
+
+// mostExpected rows of what to expect stand on a card.
+const mostExpected = 10
+
+// expectPoints is how many points each step with a course may take.
+func expectPoints(r *routeModel) int {
+	n := 0
+	for _, o := range r.Run.Outcomes {
+		if len(o.Course) > 0 {
+			n++
+		}
+	}
+	return max(2, mostExpected/max(n, 1))
+}
+
+// expectations picks points evenly from the course of a step.
+func expectations(name string, o *steps.Outcome, most int) (out []expected) {
+	celsius := func(k float64) float64 {
+		if k == 0 {
+			return math.NaN()
+		}
+		return quantity.In(k, quantity.Temperature, "°C")
+	}
+	for _, i := range spaced(len(o.Course), most) {
+		p := o.Course[i]
+		e := expected{step: name, hours: p.Hours, collectedML: math.NaN(), water: p.Water * mgPerKg, pot: celsius(p.PotK), head: celsius(p.HeadK)}
+		switch o.Kind {
+		case steps.Trap:
+			e.step, e.collectedML = name+": aqueous layer", p.AqueousM3*1e6
+		case steps.Forerun:
+			e.step, e.collectedML = name+": drawn off", p.DrawnM3*1e6
+		case steps.Column:
+			e.step = name + ": at the outlet"
+		}
+		out = append(out, e)
+	}
+	return out
+}
+
+// spaced picks most of n places evenly, the first and the last among them.
+func spaced(n, most int) (out []int) {
+	if n <= most {
+		most = n
+	}
+	for i := range most {
+		place := 0
+		if most > 1 {
+			place = (i*(n-1) + (most-1)/2) / (most - 1)
+		}
+		out = append(out, place)
+	}
+	return out
+}
+
+// wasteWords say where what is left goes, from the lines of the bill.
+func wasteWords(r *routeModel) (out []string) {
+	for _, line := range r.lines {
+		if line.Head == steps.Waste {
+			out = append(out, fmt.Sprintf("%s: %s %s a batch, %s.", capital(orWords(line.Label, line.Item)), significant(line.perBatch), symbol(line.Unit), oneLine(line.Basis)))
+		}
+	}
+	if len(out) == 0 {
+		out = append(out, "No waste is counted for this route; what is spilt or drained goes to the site's solvent waste.")
+	}
+	return out
+}
+
+// mostNever pairs stand on a card; Compare lists them all.
+const mostNever = 4
+
+// neverWords name the agents that must not meet the solvent, the dangerous first.
+func neverWords(r *routeModel) []string {
+	var dangerous, unsuitable []string
+	for _, x := range r.lot.Excluded {
+		_, agent, ok := strings.Cut(x.ID, ":")
+		if !ok || strings.Contains(x.ID, "+") {
+			continue
+		}
+		agent = strings.ReplaceAll(agent, "-", " ")
+		switch reason := oneLine(x.Reason); {
+		case strings.HasPrefix(reason, "dangerous"):
+			dangerous = append(dangerous, fmt.Sprintf("%s: %s.", capital(agent), reason))
+		case strings.HasPrefix(reason, "unsuitable") && strings.HasPrefix(x.ID, string(steps.Reactive)):
+			unsuitable = append(unsuitable, fmt.Sprintf("%s: %s.", capital(agent), reason))
+		}
+	}
+	out := slices.Concat(dangerous, unsuitable)
+	out = out[:min(len(out), mostNever)]
+	if len(out) == 0 {
+		out = append(out, "No pair is refused as dangerous here beyond the cautions above; keep acids, bases and oxidizers away.")
+	}
+	return out
+}
+
+// labelWords are what the label of the dry lot says.
+func (l *layout) labelWords(lot *lotModel) []string {
+	name := lot.solventName()
+	parts := []string{capital(name)}
+	if s := lot.Solvent; s != nil {
+		if s.CAS != "" {
+			parts = append(parts, "CAS "+s.CAS)
+		}
+		if s.Hazards.Flammability != "" {
+			parts = append(parts, s.Hazards.Flammability)
+		}
+	}
+	label := "Label: " + strings.Join(append(parts, "dried for "+oneLine(lot.Job.Name), "water as read, date of the reading, name"), "; ")
+	if s := lot.Solvent; s != nil && s.Hazards.PeroxideClass != "" && s.Hazards.PeroxideClass != "none" {
+		label += "; forms peroxides (class " + s.Hazards.PeroxideClass + "): date of the last test and of the next"
+	}
+	out := []string{label + ".", "Store closed, cool and dark, under dry gas; air that is drawn in with each litre brings water."}
+	if best := lot.best(); best != nil {
+		for _, s := range best.Route.Warnings {
+			if strings.HasPrefix(s, "kept under room air") {
+				out[1] = sentence(s)
+			}
+		}
+	}
+	return out
+}

@@ -1,0 +1,103 @@
+package workbook
+
+import (
+	"fmt"
+	"math"
+
+	"github.com/xuri/excelize/v2"
+
+	"parch/internal/steps"
+)
+
+// drawnCourse is the course of one step, at as many points as the chart draws.
+type drawnCourse struct {
+	name         string
+	hours, water [cardPoints]float64 // mg/kg
+}
+
+// courseOf is the first boiling step of a route, or else the first step whose
+// course is known.
+func courseOf(r *routeModel) drawnCourse {
+	var o *steps.Outcome
+	place := 0
+	for i := range r.Run.Outcomes {
+		x := &r.Run.Outcomes[i]
+		boils := x.Kind == steps.Trap || x.Kind == steps.Forerun
+		if len(x.Course) > 1 && (o == nil || boils && o.Kind != steps.Trap && o.Kind != steps.Forerun) {
+			o, place = x, i+1
+		}
+	}
+	if o == nil {
+		d := drawnCourse{name: "No step of this route has a course: the water as it is delivered"}
+		for i := range d.water {
+			d.hours[i], d.water[i] = float64(i), tidy(max(r.waterOut, lowestPlotted))
+		}
+		return d
+	}
+	d := drawnCourse{name: fmt.Sprintf("Step %d, %s: water against time, mg/kg", place, o.Kind)}
+	points := spaced(len(o.Course), cardPoints)
+	for i := range d.water {
+		p := o.Course[points[min(i, len(points)-1)]]
+		d.hours[i], d.water[i] = tidy(p.Hours), tidy(max(p.Water*mgPerKg, lowestPlotted))
+	}
+	return d
+}
+
+const (
+	cardChartWidth  = 470 // pixels, within the columns of figures
+	cardChartHeight = 215
+)
+
+// cardChart draws water against time for the chosen route, beside its sentences.
+// Its points stand to the right of the card, from the row data.
+func (l *layout) cardChart(c *cardModel, data, row int) {
+	g := c.g
+	lack := (cardChartHeight+8)*pixelPoints - g.span(row, g.last())
+	if lack > 0 {
+		g.heights[g.last()] = g.height(g.last()) + lack
+	}
+	courses := make([]drawnCourse, len(c.list))
+	names := make([]any, len(c.list))
+	low, high := max(c.lot.acceptAt, lowestPlotted), c.lot.target
+	for k, r := range c.list {
+		courses[k] = courseOf(r)
+		names[k] = courses[k].name
+		for _, w := range courses[k].water {
+			low, high = min(low, w), max(high, w)
+		}
+	}
+	for i, x := range []column{{name: "Drawn"}, {"Time", "h"}, {"Water", "mg/kg"}, {"Accept at", "mg/kg"}} {
+		g.put(cardChosen+i, data, text(heading, x.heading()))
+	}
+	c.choose(cardChosen, data+1, helperName, plain, "", "", names)
+	c.heads(data, helperTime, column{"time", "h"})
+	c.heads(data, helperWater, column{"water", "mg/kg"})
+	for i := range cardPoints {
+		c.chartRow(data+1+i, i, courses)
+	}
+	ch := baseChart(excelize.Scatter, "")
+	sheet := sheetBenchCard
+	ch.Title = excelize.ChartTitle{Formula: on(sheet, fixed(cardChosen, data+1))}
+	ch.Format.AltText = fmt.Sprintf("Line on a logarithmic axis: water against time in a step of the route chosen on the card of lot %d, with the acceptance limit. The numbers stand right of the card, rows %d to %d.", c.lot.no, data+1, data+cardPoints)
+	ch.XAxis.Title = axisTitle("hours")
+	ch.XAxis.MajorGridLines = true
+	ch.XAxis.NumFmt = excelize.ChartNumFmt{CustomNumFmt: "General"}
+	logarithmic(&ch.YAxis, "mg/kg")
+	bound(&ch.YAxis, low, high)
+	points := func(column int) string { return on(sheet, area(column, data+1, data+cardPoints)) }
+	head := func(column int) string { return on(sheet, fixed(column, data)) }
+	ch.Series = append(ch.Series, drawnLine(0, head(cardWater), points(cardTime), points(cardWater)),
+		drawnLevel(head(cardLevel), points(cardTime), points(cardLevel), "D55E00", excelize.LineDashDash))
+	g.draw(cardFirst, row, cardChartWidth, cardChartHeight, fmt.Sprintf("Lot %d: water against time", c.lot.no), ch)
+}
+
+func (c *cardModel) chartRow(row, i int, courses []drawnCourse) {
+	times, waters := make([]any, len(c.list)), make([]any, len(c.list))
+	for k, d := range courses {
+		times[k], waters[k] = d.hours[i], d.water[i]
+	}
+	c.choose(cardTime, row, helperTime, formula, decimals(3), "h", times)
+	c.choose(cardWater, row, helperWater, formula, decimals(2), "mg/kg", waters)
+	limit := fmt.Sprintf("MAX(lot%d_accept_limit,job_lowest_plotted)", c.lot.no)
+	c.g.put(cardLevel, row, derived(limit, math.Max(c.lot.acceptAt, lowestPlotted)).in("mg/kg").shown(decimals(2)))
+}
