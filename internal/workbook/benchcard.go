@@ -36,7 +36,7 @@ const (
 )
 
 func (l *layout) benchCard() *grid {
-	widths := []float64{19, 70, 10, 10, 10, 10, 10, 18, 14, 10, 10, 10}
+	widths := []float64{15, 54, 9, 10, 9, 9, 9, 15, 14, 10, 10, 10}
 	for range cardFigures * mostOnCard {
 		widths = append(widths, 14)
 	}
@@ -184,7 +184,7 @@ func (l *layout) cardFacts(c *cardModel, row int) {
 		name, unit string
 		v          float64
 		of         string
-	}{{"Batch", "L", lot.batchLitres, "batch_litres"}, {"Start", "mg/kg", lot.start, "start_water"}, {"Target", "mg/kg", lot.target, "target_water"}, {"Accept at", "mg/kg", lot.acceptAt, "accept_limit"}} {
+	}{{"Batch", "L", lot.batchLitres, "batch_litres"}, {"Start", "mg/kg", lot.start, "start_water"}, {"Target", "mg/kg", lot.target, "target_water"}, {"Accept", "mg/kg", lot.acceptAt, "accept_limit"}} {
 		h := text(heading, column{f.name, f.unit}.heading())
 		h.right = true
 		c.g.put(cardFirst+i, row, h)
@@ -296,14 +296,14 @@ func (c *cardModel) expectFormats() (out [5]string) {
 		var all []float64
 		for _, w := range c.words {
 			for _, e := range w.expect {
-				if v := e.figures()[f]; !math.IsNaN(v) && v >= 0.01 {
+				if v := e.figures()[f]; !math.IsNaN(v) && v >= 1 {
 					all = append(all, tidy(v))
 				}
 			}
 		}
 		out[f] = formatFor(all...)
 	}
-	out[3], out[4] = "0.0", "0.0"
+	out[0], out[3], out[4] = "0.00", "0.0", "0.0"
 	return out
 }
 

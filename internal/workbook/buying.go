@@ -117,7 +117,7 @@ func orderNote(p *costs.Purchase) string {
 	}
 	for _, o := range p.Orders {
 		if o.Every > 0 {
-			parts = append(parts, fmt.Sprintf("delivered %d packs of %s %s every %d days", o.Each, significant(float(o.Pack.Size)), unit, o.Every))
+			parts = append(parts, fmt.Sprintf("delivered %d × %s %s every %d days", o.Each, significant(float(o.Pack.Size)), unit, o.Every))
 		}
 		if o.Pack.ShelfDays > 0 {
 			parts = append(parts, fmt.Sprintf("keeps %d days after opening", o.Pack.ShelfDays))

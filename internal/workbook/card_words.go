@@ -62,7 +62,7 @@ func itemAt[T any](list []T, i int) (item T) {
 }
 
 // mostStops are the checks before a start that fit on a card.
-const mostStops = 8
+const mostStops = 7
 
 func (l *layout) stopChecks(r *routeModel) []string {
 	var out []string

@@ -28,13 +28,13 @@ func courseOf(r *routeModel) drawnCourse {
 		}
 	}
 	if o == nil {
-		d := drawnCourse{name: "No step of this route has a course: the water as it is delivered"}
+		d := drawnCourse{name: "as it is delivered"}
 		for i := range d.water {
 			d.hours[i], d.water[i] = float64(i), tidy(max(r.waterOut, lowestPlotted))
 		}
 		return d
 	}
-	d := drawnCourse{name: fmt.Sprintf("Step %d, %s: water against time, mg/kg", place, o.Kind)}
+	d := drawnCourse{name: fmt.Sprintf("Step %d, %s", place, o.Kind)}
 	points := spaced(len(o.Course), cardPoints)
 	for i := range d.water {
 		p := o.Course[points[min(i, len(points)-1)]]
@@ -44,7 +44,7 @@ func courseOf(r *routeModel) drawnCourse {
 }
 
 const (
-	cardChartWidth  = 470 // pixels, within the columns of figures
+	cardChartWidth  = 440 // pixels, within the columns of figures
 	cardChartHeight = 215
 )
 
@@ -66,6 +66,7 @@ func (l *layout) cardChart(c *cardModel, data, row int) {
 			low, high = min(low, w), max(high, w)
 		}
 	}
+	g.heights[data] = lineHeight + 1.5
 	for i, x := range []column{{name: "Drawn"}, {"Time", "h"}, {"Water", "mg/kg"}, {"Accept at", "mg/kg"}} {
 		g.put(cardChosen+i, data, text(heading, x.heading()))
 	}
@@ -75,9 +76,9 @@ func (l *layout) cardChart(c *cardModel, data, row int) {
 	for i := range cardPoints {
 		c.chartRow(data+1+i, i, courses)
 	}
-	ch := baseChart(excelize.Scatter, "")
+	ch := baseChart(excelize.Scatter, "Water against time, mg/kg, logarithmic axis")
+	ch.Title.Paragraph[0].Font.Size = 10
 	sheet := sheetBenchCard
-	ch.Title = excelize.ChartTitle{Formula: on(sheet, fixed(cardChosen, data+1))}
 	ch.Format.AltText = fmt.Sprintf("Line on a logarithmic axis: water against time in a step of the route chosen on the card of lot %d, with the acceptance limit. The numbers stand right of the card, rows %d to %d.", c.lot.no, data+1, data+cardPoints)
 	ch.XAxis.Title = axisTitle("hours")
 	ch.XAxis.MajorGridLines = true
@@ -86,7 +87,7 @@ func (l *layout) cardChart(c *cardModel, data, row int) {
 	bound(&ch.YAxis, low, high)
 	points := func(column int) string { return on(sheet, area(column, data+1, data+cardPoints)) }
 	head := func(column int) string { return on(sheet, fixed(column, data)) }
-	ch.Series = append(ch.Series, drawnLine(0, head(cardWater), points(cardTime), points(cardWater)),
+	ch.Series = append(ch.Series, drawnLine(0, on(sheet, fixed(cardChosen, data+1)), points(cardTime), points(cardWater)),
 		drawnLevel(head(cardLevel), points(cardTime), points(cardLevel), "D55E00", excelize.LineDashDash))
 	g.draw(cardFirst, row, cardChartWidth, cardChartHeight, fmt.Sprintf("Lot %d: water against time", c.lot.no), ch)
 }

@@ -51,7 +51,7 @@ func logarithmic(a *excelize.ChartAxis, name string) {
 	a.LogBase = 10
 	a.MajorGridLines = true
 	a.NumFmt = excelize.ChartNumFmt{CustomNumFmt: "General"}
-	a.Title = axisTitle(name + " " + logWords)
+	a.Title = axisTitle(name)
 }
 
 // bound sets a logarithmic axis to the decades that hold the values.

@@ -11,6 +11,11 @@ import (
 // opened.
 const mostLotsDrawn = 8
 
+const (
+	rangeChartColumn = 7
+	rangeChartWidth  = 700 // pixels
+)
+
 // rangeCharts draws the range of the cost per litre of the first routes of each lot.
 func (l *layout) rangeCharts(g *grid) {
 	for _, lot := range l.lots[:min(len(l.lots), mostLotsDrawn)] {
@@ -21,6 +26,9 @@ func (l *layout) rangeCharts(g *grid) {
 			}
 		}
 		if len(drawn) > 0 {
+			if len(g.charts)%2 == 0 { // two fit on a page
+				g.breaks = append(g.breaks, g.below()-1)
+			}
 			l.rangeChart(g, lot, drawn)
 		}
 	}
@@ -54,6 +62,5 @@ func (l *layout) rangeChart(g *grid, lot *lotModel, drawn []*routeModel) {
 			Categories: on(sheetRanges, area(2, first, last)), Values: on(sheetRanges, area(column, first, last)), Fill: fill})
 	}
 	height := max(240, 130+30*len(drawn))
-	row := g.roomForChart(float64(height) * pixelPoints)
-	g.draw(1, row, costWidth, height, fmt.Sprintf("Lot %d: cost range", lot.no), c)
+	g.draw(rangeChartColumn, first-1, rangeChartWidth, height, fmt.Sprintf("Lot %d: cost range", lot.no), c)
 }

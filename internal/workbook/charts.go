@@ -2,7 +2,6 @@ package workbook
 
 import (
 	"fmt"
-	"math"
 	"slices"
 
 	"github.com/xuri/excelize/v2"
@@ -75,19 +74,22 @@ func firstOf(lot *lotModel) string {
 	return fmt.Sprintf(", the first %d routes", mostDrawn)
 }
 
-// compareCharts draws, for each lot, cost by head and beside it the water left,
-// below the table.
+// compareCharts draws, for each lot, cost by head and beside it the water along
+// the routes, below the table.
 func (l *layout) compareCharts(g *grid) {
-	for _, lot := range l.lots {
+	for _, lot := range l.lots[:min(len(l.lots), mostLotsDrawn)] {
 		if len(lot.routes) == 0 {
 			continue
 		}
 		drawn := min(len(lot.routes), mostDrawn)
 		places := rows{lot.routes[0].no - 1, lot.routes[drawn-1].no - 1}
-		height := max(300, 130+30*drawn)
+		height := max(330, 130+30*drawn)
 		row := g.roomForChart(float64(height) * pixelPoints)
 		g.draw(1, row, costWidth, height, fmt.Sprintf("Lot %d: cost", lot.no), l.costChart(lot, places))
-		g.draw(waterColumn, row, waterWidth, height, fmt.Sprintf("Lot %d: water", lot.no), l.waterChart(lot, places))
+		g.draw(waterColumn, row, waterWidth, height, fmt.Sprintf("Lot %d: water", lot.no), l.alongChart(lot))
+	}
+	if left := len(l.lots) - mostLotsDrawn; left > 0 {
+		g.put(1, max(g.last(), g.drawnTo())+2, text(plain, fmt.Sprintf("Charts are drawn for the first %d lots; %d lots more stand in the tables only.", mostLotsDrawn, left)))
 	}
 }
 
@@ -170,41 +172,6 @@ func (l *layout) billed(lot *lotModel, h int) bool {
 		}
 	}
 	return false
-}
-
-func (l *layout) waterChart(lot *lotModel, places rows) *excelize.Chart {
-	first, last := l.compareRows.at(places.first), l.compareRows.at(places.last)
-	c := baseChart(excelize.Line, fmt.Sprintf("Lot %d: water left, mg/kg (logarithmic axis)%s", lot.no, firstOf(lot)))
-	c.Format.AltText = fmt.Sprintf("Points on a logarithmic axis: water left by each route of lot %d, with lines for the target and the acceptance limit. The numbers are on sheet Compare, rows %d to %d.", lot.no, first, last)
-	low, high := math.Inf(1), lot.target
-	for _, r := range lot.routes {
-		low, high = min(low, max(r.waterOut, lowestPlotted)), max(high, r.waterOut)
-	}
-	low = min(low, max(lot.acceptAt, lowestPlotted)) // a limit below the axis is not drawn
-	lowest, highest := math.Pow(10, math.Floor(math.Log10(low/1.5))), math.Pow(10, math.Ceil(math.Log10(high*1.2)))
-	c.YAxis.LogBase, c.YAxis.Minimum, c.YAxis.Maximum = 10, &lowest, &highest
-	c.YAxis.MajorGridLines = true
-	c.YAxis.NumFmt = excelize.ChartNumFmt{CustomNumFmt: "General"}
-	c.YAxis.Title = axisTitle("mg/kg")
-	series := func(column int, colour string, line excelize.LineOptions, symbol string, size int) {
-		c.Series = append(c.Series, excelize.ChartSeries{
-			Name:       on(sheetCompare, fixed(column, l.compareRows.first-1)),
-			Categories: on(sheetCompare, area(2, first, last)),
-			Values:     on(sheetCompare, area(column, first, last)),
-			Fill:       solid(colour),
-			Line:       line,
-			Marker: excelize.ChartMarker{Symbol: symbol, Size: size, Fill: solid(colour),
-				Border: excelize.LineOptions{Type: excelize.LineSolid, Width: 0.75, Fill: solid(darkInk)}},
-		})
-	}
-	symbol := "none"
-	if len(lot.routes) == 1 {
-		symbol = "dash" // a line through one point is not drawn
-	}
-	series(comparePlotted, "0072B2", excelize.LineOptions{Type: excelize.LineNone}, "diamond", 10)
-	series(compareTarget, "D55E00", excelize.LineOptions{Type: excelize.LineSolid, Width: 2.25}, symbol, 12)
-	series(compareLimit, "009E73", excelize.LineOptions{Type: excelize.LineSolid, Dash: excelize.LineDashDash, Width: 2.25}, symbol, 9)
-	return c
 }
 
 func solid(colour string) excelize.Fill {

@@ -22,6 +22,7 @@ func (l *layout) compare() *grid {
 	g := newGrid(sheetCompare, "One row per route. Costs and ranks follow the prices; water, hours and amounts are results of the program. Money in "+l.currency()+".",
 		tabResult, checkCell(), 26, 36, 9, 12, 10, 11, 10, 7, 9, 9, 9, 11, 11, 12, 12, 10, 13, 16)
 	l.compareBlock(g)
+	l.alongBlock(g)
 	l.compareCharts(g)
 	l.excludedBlock(g)
 	l.cautionBlock(g)

@@ -31,10 +31,11 @@ const (
 
 func (l *layout) decision() *grid {
 	g := newGrid(sheetDecision, "To sign: what is recommended for each lot, why, and what would change it. Routes, costs and ranks follow the prices; sentences are those of the run.",
-		tabResult, checkCell(), 9, 23, 31, 10, 10, 10, 10, 10, 10, 7)
+		tabResult, checkCell(), 8, 19, 31, 11, 11, 11, 11, 11, 9, 7)
+	g.printColumns = decideChance
 	g.mixed, g.frozenRows, g.portrait, g.onePage = true, frameRows, true, true
 	l.banner(g, frameRows+1)
-	g.across(decideRoute, decideRow, frameRows+1, words, l.report.Job.Title)
+	g.across(decideRoute, decideChance, frameRows+1, words, l.report.Job.Title)
 	full := l.inFull()
 	for _, lot := range l.lots[:full] {
 		l.decideFull(g, lot)
@@ -58,8 +59,8 @@ func (l *layout) inFull() int {
 
 func (l *layout) decideHeading(g *grid, row int) {
 	unit := l.money("L")
-	for i, c := range []column{{"Place", "1"}, {name: "What"}, {name: "Route id"}, {"Cost per litre in spec", unit}, {"5 % of draws", unit}, {"95 % of draws", unit},
-		{"Hours attended", "h"}, {"Water reached", "mg/kg"}, {"Chance", "%"}, {"Row", "1"}} {
+	for i, c := range []column{{"Place", "1"}, {name: "What"}, {name: "Route id"}, {"Litre in spec", unit}, {"5 % draws", unit}, {"95 % draws", unit},
+		{"Attended", "h"}, {"Water", "mg/kg"}, {"Chance", "%"}, {"Row", "1"}} {
 		h := text(heading, c.heading())
 		h.right = c.unit != ""
 		g.put(i+1, row, h)
@@ -140,8 +141,8 @@ func (l *layout) pickRow(g *grid, row int, r *routeModel, picks []pick) {
 // decideFull gives a lot its own part of the page.
 func (l *layout) decideFull(g *grid, lot *lotModel) {
 	row := g.next()
-	g.across(1, decideRow, row, block, fmt.Sprintf("Lot %d: %s", lot.no, lot.Job.Name))
-	g.across(1, decideRow, row+1, words, capital(lot.asked())+".")
+	g.across(1, decideChance, row, block, fmt.Sprintf("Lot %d: %s", lot.no, lot.Job.Name))
+	g.across(1, decideChance, row+1, words, capital(lot.asked())+".")
 	l.agreeRow(g, row+2, row+4, lot)
 	l.decideHeading(g, row+3)
 	l.placeRow(g, row+4, 1, "Recommended", lot)
@@ -160,7 +161,7 @@ func (l *layout) decideFull(g *grid, lot *lotModel) {
 func (l *layout) says(g *grid, label, s string) {
 	row := g.last() + 1
 	g.across(1, decideWhat, row, words, label)
-	g.across(decideRoute, decideRow, row, words, s)
+	g.across(decideRoute, decideChance, row, words, s)
 }
 
 // agreeRow tells whether the first place is still that of the run.
@@ -189,14 +190,14 @@ func (l *layout) decideShort(g *grid, lots []*lotModel) {
 	if len(lots) == len(l.lots) {
 		name = "The lots, a line each"
 	}
-	g.across(1, decideRow, row, block, name)
+	g.across(1, decideChance, row, block, name)
 	l.decideHeading(g, row+1)
 	shown := lots[:min(len(lots), mostInLines)]
 	for _, lot := range shown {
 		l.placeRow(g, g.last()+1, 1, fmt.Sprintf("%d %s", lot.no, shortened(lot.Job.Name, mostNameShort)), lot)
 	}
 	if left := len(lots) - len(shown); left > 0 {
-		g.across(1, decideRow, g.last()+1, warn, fmt.Sprintf("%d lots more do not fit on this page: see Compare. The signatures below do not cover them.", left))
+		g.across(1, decideChance, g.last()+1, warn, fmt.Sprintf("%d lots more do not fit on this page: see Compare. The signatures below do not cover them.", left))
 	}
 }
 
@@ -220,20 +221,19 @@ func (l *layout) assumptionRows(g *grid) {
 		return
 	}
 	row := g.next()
-	g.across(1, decideRow, row, block, "Assumptions that carry most of the cost of these routes, and their age on "+l.runDate())
+	g.across(1, decideChance, row, block, "Assumptions that carry most of the cost of these routes, and their age on "+l.runDate())
 	g.across(1, decideWhat, row+1, heading, "What")
 	for c, h := range []string{"Value", "Date", "Age / d"} {
 		g.put(decideRoute+c, row+1, text(heading, h))
 	}
-	g.across(decideHigh+1, decideRow, row+1, heading, "Rests on")
+	g.across(decideHigh, decideChance, row+1, heading, "Rests on")
 	for i, a := range list {
 		r := row + 2 + i
 		g.across(1, decideWhat, r, words, a.what)
 		g.put(decideRoute, r, text(program, a.value))
 		g.put(decideCost, r, text(program, orWords(a.date, "no date")))
 		g.put(decideLow, r, finite(l.ageDays(a.date), "d", "0"))
-		g.put(decideHigh, r, blank(words))
-		g.across(decideHigh+1, decideRow, r, words, a.rests)
+		g.across(decideHigh, decideChance, r, words, a.rests)
 	}
 }
 
@@ -247,15 +247,15 @@ func orWords(s, none string) string {
 // signRows are to be filled in by hand.
 func (l *layout) signRows(g *grid) {
 	row := g.next()
-	g.across(1, decideRow, row, block, "To be filled in: site rules, safety data sheets, local codes and licensed practice decide")
+	g.across(1, decideChance, row, block, "To be filled in: site rules, safety data sheets, local codes and licensed practice decide")
 	for i, label := range []string{"Prepared by, date", "Checked by, date", "Safety reviewed by, date", "Quantity in the room against the local fire code: litres allowed, litres present, by, date", "Review this page on"} {
 		r := row + 1 + i
 		g.across(1, decideRoute, r, words, label)
-		for c := decideCost; c <= decideRow; c++ {
+		for c := decideCost; c <= decideChance; c++ {
 			g.put(c, r, blank(field))
 		}
-		g.merged = append(g.merged, merge{r, decideCost, decideHigh}, merge{r, decideHigh + 1, decideRow})
-		g.heights[r] = signHeight
+		g.merged = append(g.merged, merge{r, decideCost, decideHigh}, merge{r, decideHigh + 1, decideChance})
+		g.heights[r] = max(signHeight, g.height(r))
 	}
 }
 

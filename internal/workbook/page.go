@@ -14,7 +14,7 @@ const (
 	footInches      = 0.6
 	printableWidth  = 841.9 - 2*72*marginInches
 	printableHeight = 595.3 - 72*(marginInches+footInches)
-	pointsPerUnit   = 5.6 // width of one unit of column width
+	pointsPerUnit   = 6.1 // width of one unit of column width, a digit of the typeface
 )
 
 // view sets what stands before the rows in the file: it must come before them.

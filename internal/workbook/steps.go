@@ -10,8 +10,10 @@ import (
 
 // Columns of Steps that more than one block uses.
 const (
-	stepWhy   = 17
-	stepState = 18
+	stepWaterIn  = 7
+	stepWaterOut = 8
+	stepWhy      = 17
+	stepState    = 18
 )
 
 // stepModel is one step with its place.
@@ -48,6 +50,7 @@ func (l *layout) stepBlock(g *grid, all []stepModel) {
 	first := g.table(frameRows+2, "Steps", []column{{name: "Lot"}, {name: "Route id"}, {"Route no", "1"}, {"Step", "1"}, {name: "Kind"},
 		{name: "Agent"}, {"Water in", "mg/kg"}, {"Water out", "mg/kg"}, {"Floor", "mg/kg"}, {"Hours total", "h"}, {"Hours attended", "h"},
 		{"Energy", "kWh"}, {"Cooling water", "L"}, {"Agent charged", "kg"}, {"Solvent lost", "L"}, {"Waste", "kg"}, {name: "Why it stops"}, {name: "State"}})
+	l.flowRows = rows{first, first + len(all) - 1}
 	water := func(get func(stepModel) float64) string { return formatFor(each(all, get)...) }
 	in := water(func(s stepModel) float64 { return s.In.Water() * mgPerKg })
 	out := water(func(s stepModel) float64 { return s.Out.Water() * mgPerKg })

@@ -116,6 +116,7 @@ func (l *layout) volumeBlocks(g *grid) {
 			months = fixed(paidNo, row)
 		}
 		v := &volumeModel{lot: lot, list: list}
+		g.breaks = append(g.breaks, g.below()-1)
 		l.paidBlock(g, v, months)
 		l.volumeBlock(g, v, months)
 		if lot.no == mostLotsDrawn {
@@ -205,13 +206,17 @@ func round2(x float64) float64 {
 	return math.Round(x/scale) * scale
 }
 
-const volumeHeight = 340 // pixels
+const (
+	volumeHeight = 380 // pixels
+	chartBeside  = 10  // column of a chart beside its table
+	besideWidth  = 500
+)
 
 func (l *layout) volumeChart(g *grid, v *volumeModel, now int) {
 	last := now + len(v.list)
-	c := baseChart(excelize.Scatter, fmt.Sprintf("Lot %d: cost per litre against litres a month, %s", v.lot.no, l.money("L")))
+	c := baseChart(excelize.Scatter, fmt.Sprintf("Lot %d: cost per litre against litres a month, %s, logarithmic axes", v.lot.no, l.money("L")))
 	c.Format.AltText = fmt.Sprintf("Lines: cost per litre of unlike routes of lot %d against the litres dried a month, with the present volume and the break-evens as points. The numbers are on sheet Ranges, rows %d to %d.", v.lot.no, v.nodes.first, last)
-	logarithmic(&c.XAxis, "litres a month")
+	logarithmic(&c.XAxis, "litres a month "+logWords)
 	logarithmic(&c.YAxis, l.money("L"))
 	low, high := math.Inf(1), 0.0
 	for _, r := range v.list {
@@ -235,6 +240,5 @@ func (l *layout) volumeChart(g *grid, v *volumeModel, now int) {
 	if now+2 <= last {
 		point(on(sheetRanges, fixed(1, now+1)), now+2, last, "star")
 	}
-	row := g.roomForChart(volumeHeight * pixelPoints)
-	g.draw(1, row, costWidth, volumeHeight, fmt.Sprintf("Lot %d: cost against volume", v.lot.no), c)
+	g.draw(chartBeside, v.paid.first-1, besideWidth, volumeHeight, fmt.Sprintf("Lot %d: cost against volume", v.lot.no), c)
 }

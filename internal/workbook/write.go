@@ -81,6 +81,7 @@ type layout struct {
 	objectiveRow  int
 	objectiveList rows
 	priceRows     rows
+	flowRows      rows // steps, one by one
 	stepRows      rows // balances
 	resultRows    rows // results of the routes
 	lineRows      rows // bill
@@ -89,6 +90,8 @@ type layout struct {
 	litreRows     rows // cost per litre
 	rankRows      rows // target and rank
 	compareRows   rows
+	along         map[int]along // by lot
+	alongHead     int
 	rangeRows     rows // ranges
 }
 
