@@ -36,6 +36,7 @@ func (l *layout) alongBlock(g *grid) {
 	if most == 0 {
 		return
 	}
+	g.breaks = append(g.breaks, g.next()-1) // pages of charts are counted from here
 	columns := []column{{name: "Lot"}, {name: "Route id"}, {"First step no", "1"}, {"Start", "mg/kg"}}
 	for i := range most {
 		columns = append(columns, column{fmt.Sprintf("After step %d", i+1), "mg/kg"})

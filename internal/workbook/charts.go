@@ -83,7 +83,7 @@ func (l *layout) compareCharts(g *grid) {
 		}
 		drawn := min(len(lot.routes), mostDrawn)
 		places := rows{lot.routes[0].no - 1, lot.routes[drawn-1].no - 1}
-		height := max(330, 130+30*drawn)
+		height := max(380, 130+barPitch(lot.routes[:drawn])*drawn)
 		row := g.roomForChart(float64(height) * pixelPoints)
 		g.draw(1, row, costWidth, height, fmt.Sprintf("Lot %d: cost", lot.no), l.costChart(lot, places))
 		g.draw(waterColumn, row, waterWidth, height, fmt.Sprintf("Lot %d: water", lot.no), l.alongChart(lot))
@@ -92,6 +92,19 @@ func (l *layout) compareCharts(g *grid) {
 		g.put(1, max(g.last(), g.drawnTo())+2, text(plain, fmt.Sprintf("Charts are drawn for the first %d lots; %d lots more stand in the tables only.", mostLotsDrawn, left)))
 	}
 }
+
+// barPitch is the height of a bar with its gap, in pixels: long names take three
+// lines beside it.
+func barPitch(list []*routeModel) int {
+	for _, r := range list {
+		if len(r.ID) > longID {
+			return 42
+		}
+	}
+	return 30
+}
+
+const longID = 26 // characters that two lines hold
 
 func (g *grid) draw(column, row, width, height int, name string, c *excelize.Chart) {
 	c.Dimension = excelize.ChartDimension{Width: uint(width), Height: uint(height)}
