@@ -175,8 +175,16 @@ func (l *layout) agreeRow(g *grid, row, place int, lot *lotModel) {
 	if len(lot.routes) == 0 {
 		return
 	}
-	f := fmt.Sprintf(`IF(C%d=C%d,"The sentences below are of this route","Another route leads: %s")`, place, row, runAgain)
-	g.put(decideCost, row, cell{look: message, formula: f, value: "The sentences below are of this route"})
+	const agrees, differs = "The sentences below are of this route", "Another route leads: " + runAgain
+	value, leads := agrees, "none"
+	if list := lot.sureRoutes(l.report.Job.Assurance); len(list) > 0 {
+		leads = list[0].ID
+	}
+	if leads != id {
+		value = differs
+	}
+	f := fmt.Sprintf(`IF(C%d=C%d,"%s","%s")`, place, row, agrees, differs)
+	g.put(decideCost, row, cell{look: message, formula: f, value: value})
 	g.flags = append(g.flags, flag{at(decideCost, row), fmt.Sprintf("$C%d<>$C%d", place, row), warn})
 }
 
