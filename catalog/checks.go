@@ -18,6 +18,9 @@ const (
 	Independent CheckKind = "independent" // not used to make the numbers that it tests
 	FitTarget   CheckKind = "fitted"      // a target of the fit that it tests
 	Recalled    CheckKind = "memory"      // from memory; it decides nothing
+	// Contradicted is a figure in print that its own compilation, or every other entry,
+	// marks as wrong. It is shown, so that nobody takes it for forgotten, and decides nothing.
+	Contradicted CheckKind = "contradicted"
 )
 
 // Check is a figure from outside that the catalog's numbers must reproduce.
@@ -33,9 +36,10 @@ type Check struct {
 	LimitUnit  string  // "%" of the value, "factor", "% abs" or that of the value
 	Kind       CheckKind
 	Confidence Confidence
-	Excuse     string // why it may miss its limit; "" for most
-	Source     string // in full
-	File       string // of the catalog, with the line
+	Excuse     string  // why it may miss its limit; "" for most
+	ExcusedTo  float64 // the deviation, in LimitUnit, that the excuse is held to; 0 where there is none
+	Source     string  // in full
+	File       string  // of the catalog, with the line
 	Line       int
 }
 
@@ -84,7 +88,7 @@ var checkQuantities = map[string]string{
 var checkFileNames = []string{"pure.csv", "azeotropes.csv", "solubility.csv", "activity.csv", "ternary-azeotropes.csv", "agents.csv"}
 
 var checkHeadings = []string{
-	"quantity", "subject", "partner", "t_c", "p_kpa", "value", "unit", "limit", "limit_unit", "kind", "confidence", "excuse", "source",
+	"quantity", "subject", "partner", "t_c", "p_kpa", "value", "unit", "limit", "limit_unit", "kind", "confidence", "excuse", "excused_to", "source",
 }
 
 var builtInChecks = sync.OnceValues(func() (*Checks, error) {
@@ -128,7 +132,7 @@ func readCheck(r row, cat *Catalog) Check {
 	c := Check{
 		Quantity: r.oneOf("quantity", keysOf(checkQuantities)...), Subject: r.text("subject"), Partner: r.text("partner"),
 		Value: r.number("value", 0, 1e9), Limit: r.number("limit", 0, 1e3), Unit: r.text("unit"), LimitUnit: r.text("limit_unit"),
-		Kind:       CheckKind(r.oneOf("kind", string(Independent), string(FitTarget), string(Recalled))),
+		Kind:       CheckKind(r.oneOf("kind", string(Independent), string(FitTarget), string(Recalled), string(Contradicted))),
 		Confidence: Confidence(r.oneOf("confidence", grades...)),
 		Excuse:     r.text("excuse"), Source: r.text("source"), File: r.table.name, Line: r.line,
 	}
@@ -142,6 +146,7 @@ func readCheck(r row, cat *Catalog) Check {
 	if c.Source == "" {
 		r.fail("source", "is empty")
 	}
+	readExcuse(r, &c)
 	if celsius, ok := r.maybe("t_c", -100, 400); ok {
 		c.TempK = celsius + zeroCelsiusK
 	}
@@ -149,6 +154,26 @@ func readCheck(r row, cat *Catalog) Check {
 		c.PressurePa = kPa * 1e3
 	}
 	return c
+}
+
+// readExcuse reads the figure that an excuse is held to. A row of memory or one that
+// is contradicted needs none; an excuse for the activity of an azeotrope's water
+// (checkAzeotropes) needs none either.
+func readExcuse(r row, c *Check) {
+	if to, ok := r.maybe("excused_to", 0, 1e4); ok {
+		c.ExcusedTo = to
+	}
+	decides := c.Kind != Recalled && c.Kind != Contradicted && c.Confidence != Memory
+	switch {
+	case c.ExcusedTo > 0 && c.Excuse == "":
+		r.fail("excused_to", "%g is given without an excuse", c.ExcusedTo)
+	case c.ExcusedTo > 0 && c.ExcusedTo <= c.Limit:
+		r.fail("excused_to", "%g is no more than the limit, %g", c.ExcusedTo, c.Limit)
+	case c.ExcusedTo == 0 && c.Excuse != "" && decides && c.Quantity != "azeotrope-water":
+		r.fail("excused_to", "is missing: an excuse names the deviation that it is held to")
+	case c.Kind == Contradicted && c.Excuse == "":
+		r.fail("excuse", "is missing: a contradicted row says by what")
+	}
 }
 
 // Deviation of a computed value from the check, in the unit of its limit: per
@@ -167,7 +192,14 @@ func (c *Check) Deviation(computed float64) float64 {
 }
 
 // Holds reports whether a computed value meets the check.
-func (c *Check) Holds(computed float64) bool {
+func (c *Check) Holds(computed float64) bool { return c.within(computed, c.Limit) }
+
+// Excuses reports whether a computed value lies within what the excuse is held to.
+func (c *Check) Excuses(computed float64) bool {
+	return c.Excuse != "" && c.within(computed, c.ExcusedTo)
+}
+
+func (c *Check) within(computed, limit float64) bool {
 	d := c.Deviation(computed)
-	return d <= c.Limit && d >= -c.Limit
+	return d <= limit && d >= -limit
 }

@@ -18,7 +18,8 @@ func (p *program) proof() *cli.Command {
 		Usage:     "hold the models against published figures, each with its source",
 		UsageText: "parch proof [--json]",
 		Description: "Prints every published figure of the catalog beside what the program computes for it. The exit\n" +
-			"status is 1 if a published figure misses its limit without a recorded reason.",
+			"status is 1 if a published figure misses its limit without a recorded reason, or by more than the\n" +
+			"reason is held to.",
 		Flags:  []cli.Flag{onOff("json", "print JSON")},
 		Action: p.runProof,
 	})
@@ -43,7 +44,7 @@ func (p *program) runProof(c *cli.Context) error {
 		err = report.ProofText(p.stdout, r, cat.Date)
 	}
 	if n := len(r.Failures()); err == nil && n > 0 {
-		err = fmt.Errorf("%d of %d figures miss their limit without a recorded reason", n, len(r.Rows))
+		err = fmt.Errorf("%d of %d figures miss their limit without a recorded reason, or by more than it allows", n, len(r.Rows))
 	}
 	return failed(err)
 }

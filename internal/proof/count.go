@@ -46,7 +46,7 @@ func (r *Result) count() {
 }
 
 // kinds in the order in which they are listed, the strictest first.
-var kinds = []catalog.CheckKind{catalog.Independent, catalog.FitTarget, catalog.Recalled}
+var kinds = []catalog.CheckKind{catalog.Independent, catalog.FitTarget, catalog.Recalled, catalog.Contradicted}
 
 func (t *Tally) add(row *Row) {
 	t.Rows++

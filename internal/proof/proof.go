@@ -12,12 +12,14 @@ import (
 // Verdict is the outcome of a row.
 type Verdict string
 
-// The verdicts. A row from memory is recalled whatever it gives: it decides nothing.
+// The verdicts. A row from memory is recalled, and one that other entries contradict
+// is contradicted, whatever it gives: they decide nothing.
 const (
 	Holds    Verdict = "holds"
 	Misses   Verdict = "misses"
-	Excused  Verdict = "excused" // misses, and the data say why
+	Excused  Verdict = "excused" // misses, the data say why, and it stays within what they allow for that
 	Recalled Verdict = "recalled"
+	Disputed Verdict = "contradicted"
 )
 
 // Row is a published figure beside the computed one.
@@ -33,10 +35,11 @@ type Row struct {
 	Kind                       catalog.CheckKind
 	Confidence                 catalog.Confidence
 	Verdict                    Verdict
-	Within                     bool   // whether the limit is met, for rows from memory too
-	Reason                     string // recorded, why the row may miss
-	Trouble                    string // why nothing could be computed
-	Source, Place              string // Place is the file and line of the row, "" where not kept
+	Within                     bool    // whether the limit is met, for rows from memory too
+	Reason                     string  // recorded, why the row may miss
+	ExcusedTo                  float64 // the deviation, in LimitUnit, that the reason is held to; 0 where there is none
+	Trouble                    string  // why nothing could be computed
+	Source, Place              string  // Place is the file and line of the row, "" where not kept
 }
 
 // Result is the whole proof.
@@ -84,15 +87,19 @@ func (r *Result) Failures() (rows []Row) {
 	return rows
 }
 
-// ExcusedShare is the share of all rows that are excused.
-func (r *Result) ExcusedShare() float64 {
-	n := 0
+// ExcusedShare is the share of all rows that are excused, and the share of the
+// published ones alone: only those can be excused.
+func (r *Result) ExcusedShare() (ofAll, ofPublished float64) {
+	excused, published := 0, 0
 	for _, row := range r.Rows {
 		if row.Verdict == Excused {
-			n++
+			excused++
+		}
+		if row.Confidence == catalog.Published && row.Verdict != Disputed {
+			published++
 		}
 	}
-	return float64(n) / float64(len(r.Rows))
+	return float64(excused) / float64(len(r.Rows)), float64(excused) / float64(published)
 }
 
 // judge fills in the deviation and the verdict of a row whose published and
@@ -107,7 +114,7 @@ func (row Row) judge(trouble error) Row {
 	if trouble != nil {
 		row.Trouble, row.Computed = trouble.Error(), math.NaN()
 	}
-	c := catalog.Check{Value: row.Published, Limit: row.Limit, LimitUnit: row.LimitUnit}
+	c := catalog.Check{Value: row.Published, Limit: row.Limit, LimitUnit: row.LimitUnit, Excuse: row.Reason, ExcusedTo: row.ExcusedTo}
 	row.Deviation, row.Ratio = c.Deviation(row.Computed), math.NaN()
 	row.Within = c.Holds(row.Computed)
 	if row.Published > 0 && row.Unit != "°C" {
@@ -116,9 +123,11 @@ func (row Row) judge(trouble error) Row {
 	switch {
 	case row.Kind == catalog.Recalled:
 		row.Verdict = Recalled
+	case row.Kind == catalog.Contradicted:
+		row.Verdict = Disputed
 	case row.Within:
 		row.Verdict = Holds
-	case row.Reason != "":
+	case c.Excuses(row.Computed):
 		row.Verdict = Excused
 	default:
 		row.Verdict = Misses

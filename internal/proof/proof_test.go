@@ -57,9 +57,11 @@ func TestPublishedRowsHold(t *testing.T) {
 		t.Errorf("%s of %s %s (%s) at %.2f K, %.4g Pa: %.5g, published %.5g %s; off by %.3g, limit %.3g %s %s [%s] %s",
 			f.Quantity, f.Subject, f.Partner, f.Condition, f.TempK, f.PressurePa, f.Computed, f.Published, f.Unit, f.Deviation, f.Limit, f.LimitUnit, f.Trouble, f.Source, f.Place)
 	}
-	if share := r.ExcusedShare(); len(r.Rows) < 900 || share > 0.06 {
+	share, ofPublished := r.ExcusedShare()
+	if len(r.Rows) < 900 || share > 0.06 {
 		t.Errorf("%d rows, %.1f %% excused; at least 900 and at most 6 %% are wanted", len(r.Rows), 100*share)
 	}
+	t.Logf("%d rows, excused %.2f %% of all, %.2f %% of the published", len(r.Rows), 100*share, 100*ofPublished)
 	for _, k := range r.Kinds {
 		t.Logf("%s: %d rows, %d within their limit, %d excused, %d not computed", k.Kind, k.Rows, k.Within, k.Excused, k.NotComputed)
 	}
@@ -102,6 +104,27 @@ func TestNoReasonIsStale(t *testing.T) {
 		if row.Reason != "" && row.Verdict == proof.Holds && row.Quantity != "azeotrope-water" {
 			t.Errorf("%s of %s %s, %.5g %s [%s]: holds (%.5g), its reason is stale", row.Quantity, row.Subject, row.Partner, row.Published, row.Unit, row.Source, row.Computed)
 		}
+	}
+}
+
+// An excuse holds as far as the deviation that it names, and no further.
+func TestAnExcuseHasALimit(t *testing.T) {
+	cat, all := load(t)
+	tighter := *all
+	tighter.Rows = slices.Clone(all.Rows)
+	bounded := 0
+	for i := range tighter.Rows {
+		if c := &tighter.Rows[i]; c.ExcusedTo > 0 {
+			c.ExcusedTo = c.Limit + 1e-6*c.Limit
+			bounded++
+		}
+	}
+	r, err := proof.Run(cat, &tighter)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if bounded < 50 || len(r.Failures()) != bounded {
+		t.Errorf("%d of %d excused rows fail when their excuses are worth nothing", len(r.Failures()), bounded)
 	}
 }
 

@@ -8,6 +8,8 @@ import (
 	"slices"
 	"strconv"
 	"strings"
+
+	"parch/catalog"
 )
 
 //go:embed reasons.csv
@@ -17,6 +19,8 @@ var reasonsFile string
 type reason struct {
 	quantity, subject, partner string
 	published                  float64
+	excusedTo                  float64 // the deviation that the reason is held to
+	notComputed                bool    // it excuses only that nothing can be computed
 	inSource, text             string
 	used                       bool
 }
@@ -25,7 +29,7 @@ type reason struct {
 // catalog's tables.
 type reasons []reason
 
-var reasonHeadings = []string{"quantity", "subject", "partner", "published", "in_source", "reason"}
+var reasonHeadings = []string{"quantity", "subject", "partner", "published", "in_source", "excused_to", "reason"}
 
 func readReasons() (reasons, error) {
 	r := csv.NewReader(strings.NewReader(reasonsFile))
@@ -40,10 +44,12 @@ func readReasons() (reasons, error) {
 	var all reasons
 	for _, row := range rows[1:] {
 		published, err := strconv.ParseFloat(row[3], 64)
-		if err != nil || row[5] == "" {
-			return nil, fmt.Errorf("reasons.csv: %q gives no published value or no reason", strings.Join(row, ","))
+		to, errTo := strconv.ParseFloat(row[5], 64)
+		none := row[5] == "not computed"
+		if err != nil || errTo != nil && !none || row[6] == "" {
+			return nil, fmt.Errorf("reasons.csv: %q gives no published value, no figure that it is held to or no reason", strings.Join(row, ","))
 		}
-		all = append(all, reason{quantity: row[0], subject: row[1], partner: row[2], published: published, inSource: row[4], text: row[5]})
+		all = append(all, reason{quantity: row[0], subject: row[1], partner: row[2], published: published, inSource: row[4], excusedTo: to, notComputed: none, text: row[6]})
 	}
 	return all, nil
 }
@@ -54,10 +60,15 @@ func (all reasons) excuse(row Row) Row {
 		return row
 	}
 	for i := range all {
-		if all[i].meets(row) {
-			all[i].used, row.Reason, row.Verdict = true, all[i].text, Excused
-			break
+		if !all[i].meets(row) {
+			continue
 		}
+		all[i].used, row.Reason, row.ExcusedTo = true, all[i].text, all[i].excusedTo
+		c := catalog.Check{Value: row.Published, LimitUnit: row.LimitUnit, Excuse: row.Reason, ExcusedTo: row.ExcusedTo}
+		if c.Excuses(row.Computed) || all[i].notComputed && math.IsNaN(row.Computed) {
+			row.Verdict = Excused
+		}
+		break
 	}
 	return row
 }

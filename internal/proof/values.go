@@ -17,7 +17,7 @@ func checkRow(cat *catalog.Catalog, c *catalog.Check) Row {
 	row := Row{
 		Quantity: c.Quantity, Subject: c.Subject, Partner: c.Partner, TempK: c.TempK, PressurePa: c.PressurePa,
 		Published: c.Value, Computed: computed, Unit: c.Unit, Limit: c.Limit, LimitUnit: c.LimitUnit,
-		Kind: c.Kind, Confidence: c.Confidence, Reason: c.Excuse, Source: c.Source, Place: fmt.Sprintf("checks/%s:%d", c.File, c.Line),
+		Kind: c.Kind, Confidence: c.Confidence, Reason: c.Excuse, ExcusedTo: c.ExcusedTo, Source: c.Source, Place: fmt.Sprintf("checks/%s:%d", c.File, c.Line),
 	}
 	if c.Quantity == "azeotrope-absent" {
 		row.Condition = "no azeotrope: 0; an azeotrope: 1"

@@ -18,7 +18,7 @@ func ProofText(w io.Writer, r *proof.Result, catalogDate string) error {
 	p := &page{w: w}
 	p.say(0, 2, "Published against computed: %d figures, catalog of %s", len(r.Rows), catalogDate)
 	p.line("")
-	p.say(3, 0, "independent: not used to make the numbers that it tests. fitted: was a target of the fit that it tests. memory: recalled, not seen in print; it is shown and decides nothing. Ratio and × are computed over published.")
+	p.say(3, 0, "independent: not used to make the numbers that it tests. fitted: was a target of the fit that it tests. memory: recalled, not seen in print; it is shown and decides nothing. contradicted: marked as wrong by its own compilation or by all other entries; shown, and decides nothing. excused: misses its limit, for a reason that is given with the deviation it is held to. Ratio and × are computed over published.")
 	p.tallies("Kind", r.Kinds, func(t proof.Tally) string { return string(t.Kind) })
 	p.tallies("Quantity, kind", r.Quantities, func(t proof.Tally) string { return t.Quantity + ", " + string(t.Kind) })
 	sources := sourcesOf(r)
@@ -36,11 +36,13 @@ func ProofText(w io.Writer, r *proof.Result, catalogDate string) error {
 
 func proofVerdict(r *proof.Result) string {
 	failures := r.Failures()
-	excused := fmt.Sprintf("%s %% of all rows are excused, each with its reason.", quantity.Significant(100*r.ExcusedShare(), 2))
+	all, published := r.ExcusedShare()
+	excused := fmt.Sprintf("%s %% of all rows, %s %% of the published ones, are excused, each with its reason and the deviation it is held to.",
+		quantity.Significant(100*all, 2), quantity.Significant(100*published, 2))
 	if len(failures) == 0 {
-		return "Every published figure meets its limit or says why not. " + excused
+		return "Every published figure meets its limit, or says why not and stays within what is said. " + excused
 	}
-	return count(float64(len(failures)), "published figure misses", "published figures miss") + " the limit without a recorded reason. " + excused
+	return count(float64(len(failures)), "published figure misses", "published figures miss") + " the limit without a recorded reason, or more than the reason allows. " + excused
 }
 
 func (p *page) tallies(heading string, all []proof.Tally, name func(proof.Tally) string) {
@@ -141,16 +143,19 @@ func proofOff(row *proof.Row) string {
 	return strings.Replace(quantity.Significant(row.Deviation, 2), "-", "−", 1)
 }
 
-func proofLimit(row *proof.Row) string {
+func proofLimit(row *proof.Row) string { return inLimitUnit(row, row.Limit) }
+
+func inLimitUnit(row *proof.Row, deviation float64) string {
+	figure := quantity.Significant(deviation, 3)
 	switch row.LimitUnit {
 	case "factor":
-		return "× " + quantity.Significant(row.Limit, 3)
+		return "× " + figure
 	case "":
-		return quantity.Significant(row.Limit, 3)
+		return figure
 	case "% abs", "% m/m":
-		return quantity.Significant(row.Limit, 3) + " % abs"
+		return figure + " % abs"
 	}
-	return quantity.Significant(row.Limit, 3) + " " + row.LimitUnit
+	return figure + " " + row.LimitUnit
 }
 
 // proofRemark says why a row may miss, or why nothing was computed.
@@ -164,6 +169,9 @@ func proofRemark(row *proof.Row) string {
 	}
 	if said == "" {
 		return ""
+	}
+	if row.ExcusedTo > 0 && said == row.Reason {
+		said += " (held to " + inLimitUnit(row, row.ExcusedTo) + ")"
 	}
 	figure := strings.TrimSpace(quantity.Significant(row.Published, 5) + " " + row.Unit)
 	return fmt.Sprintf("%s, %s: %s", proofSubject(row), figure, said)

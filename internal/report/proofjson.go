@@ -14,6 +14,7 @@ type proofOut struct {
 	Kinds       []tallyOut    `json:"kinds"`
 	Quantities  []tallyOut    `json:"quantities"`
 	Excused     number        `json:"excused_percent"`
+	OfPublished number        `json:"excused_percent_of_published"`
 	Failed      int           `json:"failed"`
 }
 
@@ -36,6 +37,7 @@ type proofRowOut struct {
 	Verdict     string  `json:"verdict"`
 	WithinLimit bool    `json:"within_limit"`
 	Reason      *string `json:"reason"`
+	ExcusedTo   number  `json:"excused_to"`
 	NotComputed *string `json:"not_computed"`
 	Source      string  `json:"source"`
 	Row         *string `json:"row"`
@@ -57,7 +59,8 @@ type tallyOut struct {
 // ProofJSON writes the proof as one JSON document. A deviation is in the unit of
 // its limit: per cent of the published value, a factor, or a difference.
 func ProofJSON(w io.Writer, r *proof.Result, catalogDate string) error {
-	out := proofOut{CatalogDate: catalogDate, Excused: number(100 * r.ExcusedShare()), Failed: len(r.Failures()), Rows: make([]proofRowOut, len(r.Rows))}
+	all, published := r.ExcusedShare()
+	out := proofOut{CatalogDate: catalogDate, Excused: number(100 * all), OfPublished: number(100 * published), Failed: len(r.Failures()), Rows: make([]proofRowOut, len(r.Rows))}
 	for i := range r.Rows {
 		out.Rows[i] = showProofRow(&r.Rows[i])
 	}
@@ -68,11 +71,14 @@ func ProofJSON(w io.Writer, r *proof.Result, catalogDate string) error {
 func showProofRow(row *proof.Row) proofRowOut {
 	out := proofRowOut{
 		Quantity: row.Quantity, Subject: row.Subject, Partner: known(row.Partner), Condition: known(row.Condition),
-		Temperature: number(math.NaN()), PressureKPa: number(math.NaN()), Unit: row.Unit,
+		Temperature: number(math.NaN()), PressureKPa: number(math.NaN()), ExcusedTo: number(math.NaN()), Unit: row.Unit,
 		Published: number(row.Published), Computed: number(row.Computed), Ratio: number(row.Ratio), Deviation: number(row.Deviation),
 		Limit: number(row.Limit), LimitUnit: row.LimitUnit, Kind: string(row.Kind), Confidence: string(row.Confidence),
 		Verdict: string(row.Verdict), WithinLimit: row.Within, Reason: known(row.Reason), NotComputed: known(row.Trouble),
 		Source: row.Source, Row: known(row.Place),
+	}
+	if row.ExcusedTo > 0 {
+		out.ExcusedTo = number(row.ExcusedTo)
 	}
 	if row.TempK > 0 {
 		out.Temperature = number(quantity.In(row.TempK, quantity.Temperature, "°C"))
