@@ -32,9 +32,6 @@ func LoadWith(own ...File) (*Catalog, error) {
 	if err != nil {
 		return nil, err
 	}
-	if err := s.validateDeep(); err != nil {
-		return nil, err
-	}
 	return s.cat, nil
 }
 

@@ -26,7 +26,7 @@ func (s *shelf) ownPair(root *document.Node, f document.Fields, v *Solvent) *Wat
 		single.Fail(`stands beside "water pair"; give one of the two`)
 		return nil
 	case full != nil:
-		return s.waterPair(full)
+		return s.waterPair(full, v.Name)
 	case single == nil:
 		root.Fail(`"water pair" or "water solubility" is missing`)
 		return nil
@@ -65,6 +65,7 @@ func (s *shelf) onePointPair(n *document.Node, v *Solvent) *WaterPair {
 		SolubilityBand: oneSolubilityBand, BandOrigin: Origin{Source: estimate, Confidence: Assumption, Note: "one solubility, slope assumed", Own: true},
 		NRTL: thermo.BinaryNRTL(halfA, halfB, halfA, halfB, 0),
 	}
+	checkGaps(n, w, v.Name)
 	w.Note = join(w.Note, fmt.Sprintf("one-parameter model through one solubility; heat of solution %.0f kJ/mol assumed; the solvent in water is overstated", heatJ/1e3))
 	v.guess("the activity model: one parameter from the water held at %s, heat of solution %.0f kJ/mol; other temperatures within a factor of %g",
 		quantity.FormatTemperature(tK), heatJ/1e3, oneSolubilityBand)

@@ -212,7 +212,7 @@ func TestOnePointModel(t *testing.T) {
 	}
 	m := mixture.Pair(cat, cat.Solvents["bench-xylene"])
 	for tK := 278.15; tK <= 383.15; tK += 15 {
-		if n := m.CountGaps(tK); n != 1 {
+		if n := m.NRTL.CountGaps(tK); n != 1 {
 			t.Errorf("%d gaps at %.0f K", n, tK)
 		}
 	}

@@ -84,7 +84,7 @@ func (s *shelf) solvent(root *document.Node, f document.Fields) *Solvent {
 		*p.of(v) = s.curve(f.Need(p.key), p, v.MolarMass.SI)
 	}
 	if v.Key != waterKey {
-		v.Water = s.waterPair(f.Need("water pair"))
+		v.Water = s.waterPair(f.Need("water pair"), v.Name)
 		v.HBond = f.Need("hydrogen bonds").OneOf("weak", "strong")
 	}
 	s.finish(root, f, v)
@@ -104,8 +104,9 @@ func (s *shelf) finish(root *document.Node, f document.Fields, v *Solvent) {
 	s.checkSolvent(root, f, v)
 }
 
-// waterPair reads the NRTL set with water as component 1 of the published order.
-func (s *shelf) waterPair(n *document.Node) *WaterPair {
+// waterPair reads the NRTL set of water and the named solvent, with water as
+// component 1 of the published order.
+func (s *shelf) waterPair(n *document.Node, name string) *WaterPair {
 	if n == nil {
 		return nil
 	}
@@ -137,6 +138,7 @@ func (s *shelf) waterPair(n *document.Node) *WaterPair {
 		w.Limits = append(w.Limits, modelLimit(item))
 	}
 	w.NRTL = thermo.BinaryNRTL(w.A12, w.B12, w.A21, w.B21, w.Alpha)
+	checkGaps(n, w, name)
 	return w
 }
 

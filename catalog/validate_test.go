@@ -66,6 +66,8 @@ func TestProblemsAreFound(t *testing.T) {
 		{"source unknown", toluene, "perry-8e-2-150", "perry-8e-2-151", 0, `heat of vaporization.source: "perry-8e-2-151" is not in sources.yaml; did you mean `},
 		{"source missing", toluene, "110.6 °C, source: crc-95", "110.6 °C", 0, `boiling point: "source" is missing`},
 		{"grade unknown", toluene, "source: iupac-critical}", "source: iupac-critical, confidence: certain}", 0, `critical temperature.confidence: "certain" is not allowed here; allowed: published, fitted, derived, assumption, common practice, memory, invented`},
+		{"gap that closes when warm", "solvents/ethanol.yaml", "b12: -15.0743 K", "b12: 400 K", 0, `water pair: water and ethanol have 0 stable miscibility gaps at 50 °C; one at all temperatures from 5 to 110 °C or none is allowed, and at 5 °C there is 1`},
+		{"two gaps", toluene, "alpha: 0.28", "alpha: 0.5", 0, `water pair: water and toluene have 2 stable miscibility gaps at 5 °C; one at all temperatures`},
 		{"alias taken", toluene, "toluol", "THF", -5, `"THF" also names tetrahydrofuran`},
 		{"file and key differ", toluene, "key:                  toluene", "key: benzene", 0, `key "benzene" does not match the name of the file, "toluene"`},
 		{"class without verdicts", toluene, "aromatic", "aromatics", 0, ""},

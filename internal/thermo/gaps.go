@@ -4,10 +4,10 @@ package thermo
 // gap: rounding skips one or two where the Gibbs energy is nearly straight.
 const leastGap = 3
 
-// CountGaps counts the miscibility gaps of the pair at tK: the edges of the lower
+// CountGaps counts the miscibility gaps of a pair at tK: the edges of the lower
 // convex hull of the Gibbs energy of mixing that skip points. The hull sees stable
 // gaps only, not the spinodals of a metastable island inside one.
-func (m *Mixture) CountGaps(tK float64) int {
+func (m *NRTL) CountGaps(tK float64) int {
 	count, last := 0, -1
 	for _, i := range m.hull(tK) {
 		if last >= 0 && i-last > leastGap {

@@ -34,16 +34,31 @@ var hullPoints = func() []float64 {
 	return xs
 }()
 
-// gibbs is the Gibbs energy of mixing over RT, per mole.
-func (m *Mixture) gibbs(x, tK float64) float64 {
-	lnW, lnS := m.NRTL.Pair(x, tK)
-	return x*(math.Log(x)+lnW) + (1-x)*(math.Log1p(-x)+lnS)
+// hullIdeal is the Gibbs energy of ideal mixing over RT at the hullPoints.
+var hullIdeal = func() []float64 {
+	g := make([]float64, len(hullPoints))
+	for i, x := range hullPoints {
+		g[i] = x*math.Log(x) + (1-x)*math.Log1p(-x)
+	}
+	return g
+}()
+
+// gibbs is the Gibbs energy of mixing over RT, per mole, at the hullPoints: the
+// excess is x1 x2 (tau21 G21/(x1 + x2 G21) + tau12 G12/(x2 + x1 G12)).
+func (m *NRTL) gibbs(tK float64) []float64 {
+	tau, g := m.factors(tK)
+	all := make([]float64, len(hullPoints))
+	for i, x := range hullPoints {
+		y := 1 - x
+		all[i] = hullIdeal[i] + x*y*(tau[1][0]*g[1][0]/(x+y*g[1][0])+tau[0][1]*g[0][1]/(y+x*g[0][1]))
+	}
+	return all
 }
 
 // hullGap returns the ends of the widest edge of the lower convex hull that
 // skips at least one point.
 func (m *Mixture) hullGap(tK float64) (left, right float64, found bool) {
-	hull := m.hull(tK)
+	hull := m.NRTL.hull(tK)
 	widest := 1
 	for k := 1; k < len(hull); k++ {
 		if skipped := hull[k] - hull[k-1]; skipped > widest {
@@ -55,12 +70,8 @@ func (m *Mixture) hullGap(tK float64) (left, right float64, found bool) {
 
 // hull returns the points of the grid that lie on the lower convex hull of the
 // Gibbs energy of mixing.
-func (m *Mixture) hull(tK float64) []int {
-	n := len(hullPoints)
-	g := make([]float64, n)
-	for i, x := range hullPoints {
-		g[i] = m.gibbs(x, tK)
-	}
+func (m *NRTL) hull(tK float64) []int {
+	n, g := len(hullPoints), m.gibbs(tK)
 	hull := make([]int, 0, n)
 	for i := range n {
 		for len(hull) >= 2 && aboveChord(g, hull[len(hull)-2], hull[len(hull)-1], i) {
