@@ -163,17 +163,27 @@ func (s *shelf) checkTernary(r row, n *TernarySet) {
 			w, a := wa.Pair(x, tK)
 			w2, a2 := alcohol.Water.NRTL.Pair(x, tK)
 			if !(math.Abs(w-w2) < same && math.Abs(a-a2) < same) {
-				r.fail("wa_a12", "the pair of water and %s is not that of the catalog at %.0f °C", n.Alcohol, tK-zeroCelsiusK)
+				s.failPair(r, "wa_a12", alcohol, "the pair of water and %s is not that of the catalog at %.0f °C", n.Alcohol, tK-zeroCelsiusK)
 				return
 			}
 		}
 		w, _ := wc.Pair(0, tK)
 		w2, _ := carrier.Water.NRTL.Pair(0, tK)
 		if !(math.Abs(w-w2) < near+n.MissWater) {
-			r.fail("wc_a12", "ln gamma of a little water in %s is %.2f at %.0f °C, %.2f in the catalog's pair", n.Carrier, w, tK-zeroCelsiusK, w2)
+			s.failPair(r, "wc_a12", carrier, "ln gamma of a little water in %s is %.2f at %.0f °C, %.2f in the catalog's pair", n.Carrier, w, tK-zeroCelsiusK, w2)
 			return
 		}
 	}
+}
+
+// failPair reports a water pair that a ternary set was not fitted with: where the
+// pair is the user's own, at its entry, since the set stands in the catalog.
+func (s *shelf) failPair(r row, heading string, v *Solvent, format string, args ...any) {
+	if top := s.tops[v.Key]; v.Own && top != nil {
+		top.Fail("its water pair is not the one that the set of three of %s:%d was fitted with; keep that pair, or give the solvent a key of its own", r.table.name, r.line)
+		return
+	}
+	r.fail(heading, format, args...)
 }
 
 // pairOf takes a pair out of a set of three.

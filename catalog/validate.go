@@ -46,6 +46,9 @@ func (s *shelf) checkSolvent(root *document.Node, f document.Fields, v *Solvent)
 	if v.FlashPoint != nil && v.FlashPoint.SI >= tb {
 		f.Get("flash point").Fail("must lie below the boiling point")
 	}
+	if f.Has("heat of vaporization") && v.HeatOfVaporization.Check() == nil {
+		checkTrouton(f, v)
+	}
 	if f.Has("vapour pressure") && v.VapourPressure.Check() == nil {
 		may := readAllowance(f.Get("known miss"), v)
 		checkBoiling(f, v, may)

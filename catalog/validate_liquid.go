@@ -93,3 +93,18 @@ func checkLiquid(f document.Fields, v *Solvent, slopeWithin float64) {
 		f.Get("vapour pressure").Fail("its slope at %.0f °C gives %.2f times the heat of vaporization; within %.0f %% is wanted", tK-zeroCelsiusK, ratio, 100*slopeWithin)
 	}
 }
+
+// Entropies of vaporization at the boiling point, J/mol/K: 88 by Trouton's rule, up to
+// 110 with hydrogen bonds and down to 60 where the vapour pairs up, as of acetic acid
+// (from memory). Where the vapour pressure is made of the heat of vaporization nothing
+// else tells a wrong one.
+const (
+	leastTrouton, mostTrouton = 55.0, 125.0
+)
+
+func checkTrouton(f document.Fields, v *Solvent) {
+	tb := v.BoilingPoint.SI
+	if entropy := v.HeatOfVaporization.At(tb) / tb; !(entropy >= leastTrouton && entropy <= mostTrouton) {
+		f.Get("heat of vaporization").Fail("is %.3g J/mol/K at the boiling point; %g to %g is usual (Trouton's rule: 88)", entropy, leastTrouton, mostTrouton)
+	}
+}

@@ -44,6 +44,9 @@ func dryingRow(cat *catalog.Catalog, d catalog.Drying, why reasons) Row {
 	return why.excuse(row.judge(err))
 }
 
+// errIdle is no figure to hold against a drying: what went in comes out.
+var errIdle = errors.New("the agent's class floor lies above the water of the start, so that the step claims nothing")
+
 var errNoTime = errors.New("the time of contact is not stated")
 
 func leftBy(cat *catalog.Catalog, d catalog.Drying) (float64, error) {
@@ -64,8 +67,11 @@ func leftBy(cat *catalog.Catalog, d catalog.Drying) (float64, error) {
 	default:
 		o, err = b.soak()
 	}
-	if err != nil {
+	switch {
+	case err != nil:
 		return math.NaN(), err
+	case a.Kind == "reactive" && o.Out.Water() >= d.From*(1-1e-9):
+		return math.NaN(), errIdle
 	}
 	return o.Out.Water(), nil
 }

@@ -46,9 +46,7 @@ func TestWaterInOrganicLayers(t *testing.T) {
 
 // The same tie-lines against the flash of sets fitted together: mixing both
 // published layers half and half must give back the water of the organic one.
-// The sets of quality B miss it by up to 1.74, methanol and benzene by 1.84. The
-// set of isobutanol and cyclohexane shows a false third liquid (28 % water) and
-// is no use for a flash: its organic layers come from the correlation.
+// The sets of quality B miss it by up to 1.74, methanol and benzene by 1.84.
 func TestTieLinesOfFittedTernaries(t *testing.T) {
 	const factor = 2
 	mixtures := fittedTogether(t)
@@ -78,11 +76,11 @@ func TestTieLinesOfFittedTernaries(t *testing.T) {
 	for k, sum := range squares {
 		rms := math.Exp(math.Sqrt(sum / float64(count[k])))
 		t.Logf("%s, %s: factor %.2f over %d tie-lines", k[0], k[1], rms, count[k])
-		if rms > factor && k != [2]string{"isobutanol", "cyclohexane"} {
+		if rms > factor {
 			t.Errorf("%s, %s: factor %.2f over %d tie-lines", k[0], k[1], rms, count[k])
 		}
 	}
-	if len(squares) < 18 {
+	if len(squares) < 17 {
 		t.Errorf("%d triples", len(squares))
 	}
 }
