@@ -26,6 +26,14 @@ const (
 	reactiveLimit = 10  // factor, the band of the class floors of reactive agents
 )
 
+// Dryings computes the measured dryings of the checks alone.
+func Dryings(cat *catalog.Catalog, all *catalog.Checks) (rows []Row) {
+	for _, d := range all.Dryings {
+		rows = append(rows, dryingRow(cat, d, nil))
+	}
+	return rows
+}
+
 // dryingRow computes what a step leaves where a drying was measured. What the
 // catalog recalls of the same measurement for reactive agents is not used: their
 // class floor is.
