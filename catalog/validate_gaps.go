@@ -1,6 +1,8 @@
 package catalog
 
 import (
+	"fmt"
+
 	"parch/internal/document"
 	"parch/internal/thermo"
 )
@@ -19,8 +21,12 @@ func checkGaps(n *document.Node, w *WaterPair, name string) {
 	first := w.NRTL.CountGaps(gapsFromK)
 	for tK := gapsFromK; tK <= gapsToK; tK += gapStepK {
 		if got := w.NRTL.CountGaps(tK); got > 1 || got != first {
-			n.Fail("water and %s have %d stable miscibility gaps at %.0f °C; one at all temperatures from %.0f to %.0f °C or none is allowed, and at %.0f °C there is %d",
-				name, got, tK-zeroCelsiusK, gapsFromK-zeroCelsiusK, gapsToK-zeroCelsiusK, gapsFromK-zeroCelsiusK, first)
+			count := fmt.Sprintf("%d at %.0f °C", got, tK-zeroCelsiusK)
+			if got != first {
+				count += fmt.Sprintf(" and %d at %.0f °C", first, gapsFromK-zeroCelsiusK)
+			}
+			n.Fail("water and %s have stable miscibility gaps: %s; exactly one at all temperatures from %.0f to %.0f °C is allowed, or none",
+				name, count, gapsFromK-zeroCelsiusK, gapsToK-zeroCelsiusK)
 			return
 		}
 	}

@@ -87,6 +87,9 @@ func (r *Result) Failures() (rows []Row) {
 	return rows
 }
 
+// ExcusedAim is the share of rows that may be excused.
+const ExcusedAim = 0.06
+
 // ExcusedShare is the share of all rows that are excused, and the share of the
 // published ones alone: only those can be excused.
 func (r *Result) ExcusedShare() (ofAll, ofPublished float64) {

@@ -39,6 +39,9 @@ func proofVerdict(r *proof.Result) string {
 	all, published := r.ExcusedShare()
 	excused := fmt.Sprintf("%s %% of all rows, %s %% of the published ones, are excused, each with its reason and the deviation it is held to.",
 		quantity.Significant(100*all, 2), quantity.Significant(100*published, 2))
+	if aim := quantity.Significant(100*proof.ExcusedAim, 2); published > proof.ExcusedAim {
+		excused += fmt.Sprintf(" Of the published ones that is more than the %s %% aimed at.", aim)
+	}
 	if len(failures) == 0 {
 		return "Every published figure meets its limit, or says why not and stays within what is said. " + excused
 	}
