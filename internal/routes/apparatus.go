@@ -87,6 +87,23 @@ func (c *Case) Receivers() (keys []string) {
 	return keys
 }
 
+// MadeAndAssembled are a receiver made for the layer that a trap on this lot
+// returns, and one that is put together; "" where there is none.
+func (c *Case) MadeAndAssembled() (made, assembled string) {
+	if c.Trap == nil {
+		return "", ""
+	}
+	for _, a := range c.receivers(c.Trap) {
+		switch {
+		case a.SetUp != nil && assembled == "":
+			assembled = a.Key
+		case a.SetUp == nil && a.Returns != "either" && made == "":
+			made = a.Key
+		}
+	}
+	return made, assembled
+}
+
 // ReceiverTemperatures (°C) are from the coldest in reach up to the room: a colder
 // one leaves less water, a warmer one has less to reheat.
 func (c *Case) ReceiverTemperatures() (all []float64) {

@@ -151,7 +151,8 @@ func (c *Case) refuseHeating() (reason, source string) {
 const leastExcess = 1.02
 
 func (c *Case) refuseSettle() (reason, source string) {
-	saturated, ok, err := c.saturated.water, c.saturated.partly, c.saturated.err
+	known := c.saturated()
+	saturated, ok, err := known.water, known.partly, known.err
 	switch {
 	case err != nil:
 		return err.Error(), c.Solvent.Water.Source

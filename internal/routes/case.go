@@ -2,7 +2,6 @@ package routes
 
 import (
 	"fmt"
-	"maps"
 	"math"
 
 	"parch/catalog"
@@ -26,16 +25,8 @@ type Case struct {
 	Trap    *steps.TrapEquilibrium // at the coldest receiver in reach; nil where no trap works
 	NoTrap  error                  // why
 
-	saturated solubility
-	traps     map[float64]*steps.TrapEquilibrium // by receiver temperature
-	known     map[stepKey]result
-}
-
-// solubility of water at room temperature.
-type solubility struct {
-	water  float64 // kg/kg
-	partly bool    // there is a second layer at all
-	err    error
+	site  *equilibria // the same for all lots of the solvent
+	known map[stepKey]result
 }
 
 // NewCase prepares a lot.
@@ -48,11 +39,9 @@ func NewCase(j *job.Job, lot job.Lot, c *catalog.Catalog) (*Case, error) {
 	k := c.Assays[j.Site.KarlFischer]
 	method := assay.Method{Name: k.Key, Repeatability: k.Repeatability.SI, DetectionLimit: k.DetectionLimit.SI, Injections: k.Injections}
 	trap, noTrap := steps.NewTrapEquilibrium(m, j.Site.ReceiverK, j.Site.PressurePa)
-	var s solubility
-	s.water, s.partly, s.err = m.Solubility(j.Site.RoomK)
 	return (&Case{
 		Job: j, Catalog: c, Solvent: solvent, Mixture: m, Assay: method, Trap: trap, NoTrap: noTrap,
-		saturated: s, traps: map[float64]*steps.TrapEquilibrium{j.Site.ReceiverK: trap},
+		site: &equilibria{traps: map[float64]*steps.TrapEquilibrium{}},
 	}).With(lot), nil
 }
 
@@ -60,7 +49,7 @@ func NewCase(j *job.Job, lot job.Lot, c *catalog.Catalog) (*Case, error) {
 func (c *Case) With(lot job.Lot) *Case {
 	k := *c
 	k.Lot, k.Feed, k.Limit = lot, feed(c.Mixture, lot, c.Job.Site.RoomK), assay.Accept(lot.Target, c.Assay)
-	k.traps, k.known = maps.Clone(c.traps), map[stepKey]result{}
+	k.known = map[stepKey]result{}
 	return &k
 }
 

@@ -13,7 +13,9 @@ const wastefulForerun = 0.5
 
 // runForerun draws the water off without return, over the column of the settings.
 func (c *Case) runForerun(lot steps.Lot, goal float64, choice choice) (steps.Outcome, error) {
-	eq, err := steps.NewForerunEquilibrium(c.Mixture, c.Job.Site.PressurePa)
+	eq, err := c.site.forerunOf(func() (*steps.ForerunEquilibrium, error) {
+		return steps.NewForerunEquilibrium(c.Mixture, c.Job.Site.PressurePa)
+	})
 	if err != nil {
 		return steps.Outcome{}, err
 	}

@@ -232,17 +232,12 @@ func (c *Case) trapAt(receiverC float64) (*steps.TrapEquilibrium, error) {
 	if tK < coldest {
 		return nil, fmt.Errorf("%w: a receiver at %s; the site reaches %s", ErrSettings, quantity.FormatTemperature(tK), quantity.FormatTemperature(coldest))
 	}
-	if tK == coldest && c.Trap == nil {
-		return nil, c.NoTrap
+	if tK == coldest {
+		return c.Trap, c.NoTrap
 	}
-	if known := c.traps[tK]; known != nil {
-		return known, nil
-	}
-	trap, err := steps.NewTrapEquilibrium(c.Mixture, tK, c.Job.Site.PressurePa)
-	if err == nil {
-		c.traps[tK] = trap
-	}
-	return trap, err
+	return c.site.trap(tK, func() (*steps.TrapEquilibrium, error) {
+		return steps.NewTrapEquilibrium(c.Mixture, tK, c.Job.Site.PressurePa)
+	})
 }
 
 const zeroCelsiusK = 273.15

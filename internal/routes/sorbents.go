@@ -31,17 +31,26 @@ func (c *Case) fitForBeads(lot steps.Lot, goal float64) error {
 	case lot.Water() <= goal:
 		return refusal{fmt.Errorf("%s is at or below the %s asked for: nothing is left for a sieve", quantity.FormatWater(lot.Water()), quantity.FormatWater(goal))}
 	case lot.Water() > c.MostForBeads()*(1+1e-6):
-		return refusal{fmt.Errorf("free water never goes over beads: the lot holds %s, %s dissolves %s; draw the water off first", quantity.FormatWater(lot.Water()), c.Solvent.Name, quantity.FormatWater(c.saturated.water))}
+		return refusal{fmt.Errorf("free water never goes over beads: the lot holds %s, %s dissolves %s; draw the water off first", quantity.FormatWater(lot.Water()), c.Solvent.Name, quantity.FormatWater(c.saturated().water))}
 	}
 	return nil
 }
 
+// Saturation is the water (kg/kg) that the solvent holds at room temperature, 1
+// where it takes up any amount.
+func (c *Case) Saturation() float64 {
+	if s := c.saturated(); s.err == nil && s.partly {
+		return s.water
+	}
+	return 1
+}
+
 // MostForBeads is the water (kg/kg) above which a lot holds free water.
 func (c *Case) MostForBeads() float64 {
-	if c.saturated.err != nil || !c.saturated.partly {
-		return math.Inf(1)
+	if s := c.saturated(); s.err == nil && s.partly {
+		return math.Max(leastExcess*s.water, c.Lot.Water)
 	}
-	return math.Max(leastExcess*c.saturated.water, c.Lot.Water)
+	return math.Inf(1)
 }
 
 func (c *Case) soakRig(stirred bool) steps.SoakRig {

@@ -64,7 +64,7 @@ func (t *Tuner) axes(r routes.Route, stands []stand) (all []axis) {
 		count[stage.Kind]++
 		switch stage.Kind {
 		case steps.Trap:
-			all = append(all, oneOf(t.Case.Receivers(), func(s *routes.Settings, key string) { s.Receiver[k] = key }))
+			all = append(all, oneOf(t.receivers(), func(s *routes.Settings, key string) { s.Receiver[k] = key }))
 			all = append(all, oneOf(t.Case.ReceiverTemperatures(), func(s *routes.Settings, c float64) { s.ReceiverC[k] = c }))
 		case steps.Forerun:
 			all = append(all, oneOf(t.Case.ColumnStages(), func(s *routes.Settings, n int) { s.Stages[k] = n }))
@@ -78,6 +78,13 @@ func (t *Tuner) axes(r routes.Route, stands []stand) (all []axis) {
 		}
 	}
 	return all
+}
+
+func (t *Tuner) receivers() []string {
+	if t.Receiver != "" {
+		return []string{t.Receiver}
+	}
+	return t.Case.Receivers()
 }
 
 func oneOf[T any](values []T, set func(*routes.Settings, T)) axis {

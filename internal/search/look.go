@@ -72,10 +72,7 @@ func (g *tuning) grid() [][]float64 {
 // allAxes tries every combination of the axes at the hand-overs of a spot or,
 // where those are too many, every value of each axis in turn until none helps.
 func (g *tuning) allAxes(s spot) {
-	product := 1
-	for _, a := range g.axes {
-		product *= a.count
-	}
+	product := g.combinations()
 	if product > mostProduct {
 		g.sweep(s)
 		return
@@ -90,6 +87,14 @@ func (g *tuning) allAxes(s spot) {
 			at.at[i] = 0
 		}
 	}
+}
+
+func (g *tuning) combinations() int {
+	product := 1
+	for _, a := range g.axes {
+		product *= a.count
+	}
+	return product
 }
 
 // sweep tries all values of one axis after another, from the best found so far,

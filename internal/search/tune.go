@@ -31,6 +31,8 @@ type Tuner struct {
 	Objective Objective
 	Mix       *Mix               // of the objectives, where the job weighs several
 	Site      *costs.Arrangement // nil: uses are paid for as they come
+	Exact     bool               // hand-overs are not rounded
+	Receiver  string             // the only receiver that a trap may have; "": any that fits
 }
 
 // Run carries out a route and arranges its uses as the site pays for them.
@@ -96,7 +98,7 @@ func (t *Tuner) TuneFrom(r routes.Route, warm *routes.Settings) (routes.Run, err
 	if err != nil {
 		return routes.Run{}, err
 	}
-	if warm != nil {
+	if warm = g.worthIt(warm); warm != nil {
 		g.around(g.nearest(*warm))
 	}
 	if warm == nil || g.best.score >= scoreMissed {
@@ -108,8 +110,18 @@ func (t *Tuner) TuneFrom(r routes.Route, warm *routes.Settings) (routes.Run, err
 	case math.IsInf(g.best.score, 1):
 		return routes.Run{}, g.last
 	}
-	g.round()
+	if !t.Exact {
+		g.round()
+	}
 	return g.best.run, g.failed
+}
+
+// worthIt drops a start where everything is tried out anyway.
+func (g *tuning) worthIt(warm *routes.Settings) *routes.Settings {
+	if len(g.places) == 0 && g.combinations() <= mostProduct {
+		return nil
+	}
+	return warm
 }
 
 func (t *Tuner) prepare(r routes.Route) (*tuning, error) {

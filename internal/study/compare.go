@@ -40,6 +40,9 @@ func Compare(ctx context.Context, j *job.Job, c *catalog.Catalog, o Options) (*R
 	if err := r.buy(c); err != nil {
 		return nil, err
 	}
+	if err := r.decide(ctx, c); err != nil {
+		return nil, err
+	}
 	r.Book = usedPrices(r)
 	r.Sources, r.Weak = provenance(r, c)
 	r.Weak = append(r.Weak, r.recalled()...)
@@ -124,6 +127,7 @@ func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog
 			return Lot{}, fmt.Errorf("%s: %w", r.ID(), err)
 		}
 		l.Routes = append(l.Routes, route)
+		l.offered = append(l.offered, r)
 	}
 	if l.Routes, err = ranked(l.Routes, tuner); err != nil {
 		return Lot{}, err

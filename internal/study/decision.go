@@ -13,6 +13,7 @@ type BreakEven struct {
 	Below  string // the route that is ahead under At (or everywhere, where Never)
 	Above  string // the route that is ahead over At
 	Never  bool   // the order is the same from From to To
+	Step   bool   // a cost jumps at At, where a route ceases to reach the limit or becomes possible
 	Answer string // in a sentence
 }
 

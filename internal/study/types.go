@@ -46,7 +46,9 @@ type Lot struct {
 	Front       []FrontPoint // routes that reach the limit and have their prices
 	WhatIf      *WhatIf      // nil where there is nothing to dry
 	Warnings    []string
-	Doubts      []Mover // of the best route, the largest first; empty without draws
+
+	offered []routes.Route // that were run
+	Doubts  []Mover        // of the best route, the largest first; empty without draws
 }
 
 // Route is one compared route.

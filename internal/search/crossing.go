@@ -1,0 +1,110 @@
+package search
+
+import (
+	"errors"
+	"fmt"
+	"math"
+
+	"parch/internal/thermo"
+)
+
+// Duel gives the costs of two sides at a figure of the job, each +Inf where that
+// side has nothing to offer.
+type Duel func(x float64) (one, other float64, err error)
+
+// Crossing is where the cheaper of two sides changes.
+type Crossing struct {
+	At       float64
+	OneBelow bool // the first side is the cheaper one under At
+	Step     bool // one of the costs jumps there: the two do not meet
+	Never    bool
+	OneAhead bool // where Never: the first side is the cheaper one all along
+}
+
+// CloseEnough is the share by which two costs may differ at a break-even.
+const CloseEnough = 1e-4
+
+// tolerance of ln(x) at a root.
+const lnTolerance = 1e-11
+
+// Cross finds where the order of two sides changes between lo and hi: at points
+// spaced evenly in the logarithm the sign of the difference is looked for, the
+// change next to now is solved for by Brent's method.
+func Cross(d Duel, lo, hi, now float64, points int) (Crossing, error) {
+	var failed error
+	gap := func(lnX float64) float64 {
+		one, other, err := d(math.Exp(lnX))
+		if err != nil {
+			failed = err
+		}
+		return difference(one, other)
+	}
+	xs, gaps := make([]float64, points), make([]float64, points)
+	for i := range xs {
+		xs[i] = math.Log(lo) + math.Log(hi/lo)*float64(i)/float64(points-1)
+		gaps[i] = gap(xs[i])
+	}
+	if failed != nil {
+		return Crossing{}, failed
+	}
+	at := -1
+	for i := range len(xs) - 1 {
+		if gaps[i]*gaps[i+1] < 0 && (at < 0 || away(xs, i, now) < away(xs, at, now)) {
+			at = i
+		}
+	}
+	if at < 0 {
+		return never(gaps)
+	}
+	root, err := thermo.Brent(gap, xs[at], xs[at+1], lnTolerance)
+	if err = firstOf(failed, err); err != nil {
+		return Crossing{}, err
+	}
+	c := Crossing{At: math.Exp(root), OneBelow: gaps[at] < 0}
+	c.Step = math.Abs(gap(root)) > CloseEnough
+	return c, failed
+}
+
+// difference is relative and finite: a side without an offer has lost by far.
+func difference(one, other float64) float64 {
+	const far = 10.0
+	switch {
+	case math.IsInf(one, 1) && math.IsInf(other, 1):
+		return math.NaN()
+	case math.IsInf(one, 1):
+		return far
+	case math.IsInf(other, 1):
+		return -far
+	}
+	return 2 * (one - other) / (one + other)
+}
+
+// away is how far an interval lies from the present figure.
+func away(xs []float64, i int, now float64) float64 {
+	lnNow := math.Log(now)
+	return math.Max(0, math.Max(xs[i]-lnNow, lnNow-xs[i+1]))
+}
+
+func never(gaps []float64) (Crossing, error) {
+	for _, g := range gaps {
+		if !math.IsNaN(g) {
+			return Crossing{At: math.NaN(), Never: true, OneAhead: g < 0}, nil
+		}
+	}
+	return Crossing{}, fmt.Errorf("%w over the whole range", errNoOffer)
+}
+
+var errNoOffer = errors.New("neither side has a route that reaches the limit")
+
+// NoOffer reports whether a crossing was not found because there is nothing to
+// compare.
+func NoOffer(err error) bool { return errors.Is(err, errNoOffer) }
+
+func firstOf(errs ...error) error {
+	for _, err := range errs {
+		if err != nil {
+			return err
+		}
+	}
+	return nil
+}

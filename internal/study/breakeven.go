@@ -1,0 +1,353 @@
+package study
+
+import (
+	"context"
+	"fmt"
+	"maps"
+	"math"
+
+	"github.com/shopspring/decimal"
+
+	"parch/catalog"
+	"parch/internal/costs"
+	"parch/internal/job"
+	"parch/internal/routes"
+	"parch/internal/search"
+)
+
+// Keys of the break-evens, as in the JSON.
+const (
+	StartWater = "start_water_mg_per_kg"
+	Volume     = "litres_a_month_against_buying"
+	Technician = "technician_per_hour"
+	SievePrice = "sieve_per_kg"
+	SieveUses  = "uses_of_a_sieve"
+	Receiver   = "uses_a_year_of_a_receiver"
+)
+
+// How far a figure of the job is varied, and at how many points a change of order
+// is looked for before it is solved for.
+const (
+	rateFactor  = 5
+	sieveFactor = 10
+	points      = 6
+)
+
+func (q *question) breakEvens(ctx context.Context) error {
+	for _, ask := range []func() (*BreakEven, error){q.startWater, q.volume, q.technician, q.sievePrice, q.sieveUses, q.receiver} {
+		if err := ctx.Err(); err != nil {
+			return err
+		}
+		b, err := ask()
+		if search.NoOffer(err) {
+			continue
+		}
+		if err != nil {
+			return err
+		}
+		if b != nil {
+			q.lot.BreakEvens = append(q.lot.BreakEvens, *b)
+		}
+	}
+	return nil
+}
+
+// sides are two fields of routes over a figure of the job, and who won them last.
+type sides struct {
+	at         func(x float64) *search.Tuner
+	field      func(t *search.Tuner, first bool) search.Field
+	one, other search.Won
+}
+
+func (s *sides) duel(x float64) (one, other float64, err error) {
+	t := s.at(x)
+	if s.one, _, err = s.field(t, true).Cheapest(nil); err != nil {
+		return 0, 0, err
+	}
+	if s.other, _, err = s.field(t, false).Cheapest(nil); err != nil {
+		return 0, 0, err
+	}
+	return s.one.Cost, s.other.Cost, nil
+}
+
+// families asks where the cheapest of one kind of routes changes places with the
+// cheapest of another kind.
+func (q *question) families(b BreakEven, at func(float64) *search.Tuner, first, second func(routes.Route) bool) (*BreakEven, error) {
+	s := sides{at: at, field: func(t *search.Tuner, isFirst bool) search.Field {
+		if isFirst {
+			return q.field(t, first)
+		}
+		return q.field(t, second)
+	}}
+	c, err := search.Cross(s.duel, b.From, b.To, b.Now, points)
+	if err != nil {
+		return nil, err
+	}
+	at1 := c.At
+	if c.Never {
+		at1 = math.Min(math.Max(b.Now, b.From), b.To)
+	}
+	if _, _, err := s.duel(at1); err != nil {
+		return nil, err
+	}
+	b.settle(c, s.one.ID(), s.other.ID())
+	return &b, nil
+}
+
+// settle enters the crossing of two sides.
+func (b *BreakEven) settle(c search.Crossing, one, other string) {
+	b.At, b.Never, b.Step = c.At, c.Never, c.Step
+	switch {
+	case c.Never && c.OneAhead:
+		b.Below, b.Above = one, one
+	case c.Never:
+		b.Below, b.Above = other, other
+	case c.OneBelow:
+		b.Below, b.Above = one, other
+	default:
+		b.Below, b.Above = other, one
+	}
+}
+
+// leastStart is how far above the target the range of start waters begins.
+const leastStart = 1.5
+
+// mostStart is the wettest start asked for where the solvent takes up any water.
+const mostStart = 0.1
+
+func (q *question) startWater() (*BreakEven, error) {
+	b := BreakEven{Key: StartWater, Unit: "mg/kg", Now: q.lot.Job.Water * 1e6, What: "start water at which pre-drying pays"}
+	b.From, b.To = leastStart*q.lot.Job.Target*1e6, math.Min(mostStart, q.k.Saturation())*1e6
+	if b.From >= b.To {
+		return nil, nil
+	}
+	at := func(x float64) *search.Tuner {
+		return q.withLot(func(l *job.Lot) { l.Water, l.Saturated = x*1e-6, false })
+	}
+	return q.families(b, at, isPreDried, isDirect)
+}
+
+const litresPerM3, monthsPerYear = 1e3, 12
+
+func (q *question) volume() (*BreakEven, error) {
+	litres := q.lot.Job.BatchM3 * litresPerM3
+	b := BreakEven{Key: Volume, Unit: "L/month", Now: litres * q.lot.Job.BatchesPerYear / monthsPerYear, What: "litres a month at which drying here beats buying dry"}
+	b.From, b.To = litres*1/monthsPerYear, litres*1000/monthsPerYear
+	at := func(x float64) *search.Tuner {
+		return q.withLot(func(l *job.Lot) { l.BatchesPerYear = x * monthsPerYear / litres })
+	}
+	return q.families(b, at, isDrying, isBuy)
+}
+
+func (q *question) technician() (*BreakEven, error) {
+	price, ok := q.book["technician"]
+	if !ok || !price.PerUnit.IsPositive() {
+		return nil, nil
+	}
+	now := price.PerUnit.InexactFloat64()
+	b := BreakEven{Key: Technician, Unit: q.job.Currency + "/h", Now: now, From: now / rateFactor, To: now * rateFactor, What: "technician rate at which the best route changes"}
+	return q.winner(b, func(x float64) *search.Tuner { return q.priced(x/now, "technician") })
+}
+
+// sieves of the catalog in the routes on offer.
+func (q *question) sieves() (keys []string) {
+	seen := map[string]bool{}
+	for _, r := range q.offered {
+		for _, s := range r {
+			if a := q.k.Catalog.Agents[s.Agent]; a != nil && a.Kind == "sieve" && !seen[s.Agent] {
+				seen[s.Agent] = true
+				keys = append(keys, s.Agent)
+			}
+		}
+	}
+	return keys
+}
+
+// ownSieve is the sieve of the cheapest route that has one.
+func (q *question) ownSieve() string {
+	for i := range q.lot.Routes {
+		for _, s := range q.lot.Routes[i].Run.Route {
+			if a := q.k.Catalog.Agents[s.Agent]; a != nil && a.Kind == "sieve" {
+				return s.Agent
+			}
+		}
+	}
+	return ""
+}
+
+func (q *question) sievePrice() (*BreakEven, error) {
+	key := q.ownSieve()
+	price, ok := q.book[key]
+	if !ok || !price.PerUnit.IsPositive() {
+		return nil, nil
+	}
+	now := price.PerUnit.InexactFloat64()
+	b := BreakEven{Key: SievePrice, Unit: q.job.Currency + "/kg", Now: now, From: now / sieveFactor, To: now * sieveFactor,
+		What: "price of " + q.k.Catalog.Agents[key].Name + ", the other sieves rising and falling with it, at which the best route changes"}
+	sieves := q.sieves()
+	return q.winner(b, func(x float64) *search.Tuner { return q.priced(x/now, sieves...) })
+}
+
+// priced is the tuner with the prices of some items multiplied.
+func (q *question) priced(factor float64, items ...string) *search.Tuner {
+	book := maps.Clone(q.book)
+	for _, item := range items {
+		if p, ok := book[item]; ok {
+			p.PerUnit = p.PerUnit.Mul(decimal.NewFromFloat(factor))
+			book[item] = p
+		}
+	}
+	return q.tuner(q.k.With(q.k.Lot), book)
+}
+
+func (q *question) sieveUses() (*BreakEven, error) {
+	key := q.ownSieve()
+	if key == "" || q.k.Catalog.Agents[key].Lives == nil {
+		return nil, nil
+	}
+	b := BreakEven{Key: SieveUses, Unit: "uses", Now: q.k.Catalog.Agents[key].Lives.SI, From: 1, To: 50, What: "uses of a charge of sieve, dried in the oven between them, at which the best route changes"}
+	sieves := q.sieves()
+	return q.winner(b, func(x float64) *search.Tuner {
+		cat := *q.k.Catalog
+		cat.Agents = maps.Clone(cat.Agents)
+		for _, key := range sieves {
+			a := *cat.Agents[key]
+			a.Lives = &catalog.Value{SI: x}
+			cat.Agents[key] = &a
+		}
+		k := q.k.With(q.k.Lot)
+		k.Catalog = &cat
+		return q.tuner(k, q.book)
+	})
+}
+
+// winner asks at which figure the cheapest route of all changes. The order of two
+// routes is solved for; where a third is cheaper there, it takes the place of the
+// second, until none is.
+func (q *question) winner(b BreakEven, at func(float64) *search.Tuner) (*BreakEven, error) {
+	now, _, err := q.field(at(b.Now), nil).Cheapest(nil)
+	if err != nil {
+		return nil, err
+	}
+	if now.Route == nil {
+		return nil, nil
+	}
+	rival, near, err := q.rival(b, at, now.ID())
+	if err != nil {
+		return nil, err
+	}
+	for range len(q.offered) {
+		if rival.Route == nil {
+			b.settle(search.Crossing{Never: true, OneAhead: true, At: math.NaN()}, now.ID(), "")
+			return &b, nil
+		}
+		lo, hi := math.Min(b.Now, near), math.Max(b.Now, near)
+		c, err := search.Cross(q.pair(at, now.Route, rival.Route), lo, hi, b.Now, 2)
+		if err != nil {
+			return nil, err
+		}
+		third, _, err := q.field(at(c.At), nil).Cheapest(nil)
+		if err != nil {
+			return nil, err
+		}
+		cost, err := q.field(at(c.At), nil).Cost(now.Route)
+		if err != nil {
+			return nil, err
+		}
+		if third.ID() == now.ID() || third.ID() == rival.ID() || third.Cost >= cost*(1-search.CloseEnough/10) {
+			b.settle(c, now.ID(), rival.ID())
+			return &b, nil
+		}
+		rival, near = third, c.At
+	}
+	return nil, fmt.Errorf("%s: no order of the routes was found", b.Key)
+}
+
+func (q *question) pair(at func(float64) *search.Tuner, one, other routes.Route) search.Duel {
+	return func(x float64) (float64, float64, error) {
+		f := q.field(at(x), nil)
+		a, err := f.Cost(one)
+		if err != nil {
+			return 0, 0, err
+		}
+		b, err := f.Cost(other)
+		return a, b, err
+	}
+}
+
+// rival is the nearest other winner on either side of the present figure.
+func (q *question) rival(b BreakEven, at func(float64) *search.Tuner, now string) (search.Won, float64, error) {
+	const each = 3 // points on either side
+	for i := 1; i <= each; i++ {
+		for _, end := range []float64{b.To, b.From} {
+			x := b.Now * math.Pow(end/b.Now, float64(i)/each)
+			if x == b.Now {
+				continue
+			}
+			won, _, err := q.field(at(x), nil).Cheapest(nil)
+			if err != nil {
+				return won, 0, err
+			}
+			if won.Route != nil && won.ID() != now {
+				return won, x, nil
+			}
+		}
+	}
+	return search.Won{}, 0, nil
+}
+
+// receiver asks how often a trap has to be used in a year before a receiver made
+// for it costs less than one assembled from common glassware.
+func (q *question) receiver() (*BreakEven, error) {
+	made, assembled := q.k.MadeAndAssembled()
+	trapped := q.cheapestTrap()
+	if made == "" || assembled == "" || trapped == nil {
+		return nil, nil
+	}
+	b := BreakEven{Key: Receiver, Unit: "uses/yr", Now: q.lot.Job.BatchesPerYear, From: 0.2, To: 1000, What: "uses a year at which buying a receiver beats assembling one"}
+	none := *q.job // neither is at hand
+	none.Equipment = nil
+	for _, e := range q.job.Equipment {
+		if e.Item != made && e.Item != assembled {
+			none.Equipment = append(none.Equipment, e)
+		}
+	}
+	site := costs.NewArrangement(q.k.Catalog, &none)
+	cost := func(x float64, key string) (float64, error) {
+		lot := q.k.Lot
+		lot.BatchesPerYear = x
+		k := q.k.With(lot)
+		k.Job = &none
+		t := q.tuner(k, q.book)
+		t.Site, t.Receiver = site, key
+		return search.Field{Tuner: t, Warm: q.warm}.Cost(trapped)
+	}
+	c, err := search.Cross(func(x float64) (float64, float64, error) {
+		one, err := cost(x, made)
+		if err != nil {
+			return 0, 0, err
+		}
+		other, err := cost(x, assembled)
+		return one, other, err
+	}, b.From, b.To, b.Now, points)
+	if err != nil {
+		return nil, err
+	}
+	b.settle(c, made, assembled)
+	b.What += ", for " + trapped.ID()
+	return &b, nil
+}
+
+// cheapestTrap is the cheapest route with a trap that reaches the limit.
+func (q *question) cheapestTrap() routes.Route {
+	for i := range q.lot.Routes {
+		if r := &q.lot.Routes[i]; r.Meets() && isTrapped(r.Run.Route) {
+			for _, offered := range q.offered {
+				if offered.ID() == r.ID {
+					return offered
+				}
+			}
+		}
+	}
+	return nil
+}

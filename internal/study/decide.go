@@ -1,0 +1,104 @@
+package study
+
+import (
+	"context"
+	"slices"
+
+	"golang.org/x/sync/errgroup"
+
+	"parch/catalog"
+	"parch/internal/costs"
+	"parch/internal/job"
+	"parch/internal/routes"
+	"parch/internal/search"
+	"parch/internal/steps"
+)
+
+// decide adds to each lot what would change the answer: where routes change
+// places, what is given up for what, and the cheapest routes of other lots.
+func (r *Report) decide(ctx context.Context, c *catalog.Catalog) error {
+	group, ctx := errgroup.WithContext(ctx)
+	group.SetLimit(8)
+	for i := range r.Lots {
+		l := &r.Lots[i]
+		l.front()
+		if l.NothingToDo != "" || len(l.offered) == 0 {
+			continue
+		}
+		group.Go(func() error {
+			q, err := newQuestion(r, l, c)
+			if err != nil {
+				return err
+			}
+			if err := q.breakEvens(ctx); err != nil {
+				return err
+			}
+			return q.whatIf(ctx)
+		})
+	}
+	return group.Wait()
+}
+
+// question is what is asked of a lot beyond its ranking: always by the cost.
+type question struct {
+	lot     *Lot
+	job     *job.Job
+	k       *routes.Case
+	book    costs.Book
+	site    *costs.Arrangement
+	offered []routes.Route
+	warm    map[string]routes.Settings
+}
+
+func newQuestion(r *Report, l *Lot, c *catalog.Catalog) (*question, error) {
+	lot := l.Job
+	lot.FreeWaterM3 = 0 // what is asked of the dissolved water
+	k, err := routes.NewCase(r.Job, lot, c)
+	if err != nil {
+		return nil, err
+	}
+	q := &question{lot: l, job: r.Job, k: k, book: r.Book, site: costs.NewArrangement(c, r.Job), warm: map[string]routes.Settings{}}
+	for _, route := range l.offered {
+		if route[0].Kind != steps.Settle {
+			q.offered = append(q.offered, route)
+		}
+	}
+	for i := range l.Routes {
+		q.warm[l.Routes[i].ID] = l.Routes[i].Run.Settings
+	}
+	return q, nil
+}
+
+func (q *question) tuner(k *routes.Case, book costs.Book) *search.Tuner {
+	return &search.Tuner{Case: k, Book: book, Objective: search.Cost, Site: q.site, Exact: true}
+}
+
+// field of the routes that pass, tuned for a case and its prices.
+func (q *question) field(t *search.Tuner, pass func(routes.Route) bool) search.Field {
+	f := search.Field{Tuner: t, Warm: q.warm}
+	for _, r := range q.offered {
+		if pass == nil || pass(r) {
+			f.Routes = append(f.Routes, r)
+		}
+	}
+	return f
+}
+
+func (q *question) withLot(change func(*job.Lot)) *search.Tuner {
+	lot := q.k.Lot
+	change(&lot)
+	return q.tuner(q.k.With(lot), q.book)
+}
+
+func isBuy(r routes.Route) bool      { return r[0].Kind == steps.Buy }
+func isDrying(r routes.Route) bool   { return !isBuy(r) }
+func isDirect(r routes.Route) bool   { return len(r) == 1 && !isBuy(r) }
+func isPreDried(r routes.Route) bool { return len(r) > 1 }
+
+func anySieve(r routes.Route) bool {
+	return slices.ContainsFunc(r, func(s routes.Stage) bool { return s.Kind == steps.Soak || s.Kind == steps.Column })
+}
+
+func isTrapped(r routes.Route) bool {
+	return slices.ContainsFunc(r, func(s routes.Stage) bool { return s.Kind == steps.Trap })
+}

@@ -1,0 +1,40 @@
+package study
+
+// front enters the routes that reach the limit and have their prices into the
+// trade-off of cost, attended hours, waste and energy, and names for each the first
+// route that is no worse in all four and better in one.
+func (l *Lot) front() {
+	l.Front = nil
+	for i := range l.Routes {
+		if r := &l.Routes[i]; r.Meets() && r.Bill.Priced() {
+			l.Front = append(l.Front, FrontPoint{
+				ID: r.ID, CostPerLitre: r.Bill.PerLitre.InexactFloat64(),
+				HoursAttended: r.Run.HoursAttended, WasteKg: r.Run.WasteKg, EnergyKWh: r.Run.EnergyKWh,
+			})
+		}
+	}
+	for i := range l.Front {
+		for _, other := range l.Front {
+			if other.beats(l.Front[i]) {
+				l.Front[i].DominatedBy = other.ID
+				break
+			}
+		}
+	}
+}
+
+func (p FrontPoint) beats(o FrontPoint) bool {
+	mine, others := p.values(), o.values()
+	better := false
+	for i := range mine {
+		if mine[i] > others[i] {
+			return false
+		}
+		better = better || mine[i] < others[i]
+	}
+	return better
+}
+
+func (p FrontPoint) values() [4]float64 {
+	return [4]float64{p.CostPerLitre, p.HoursAttended, p.WasteKg, p.EnergyKWh}
+}
