@@ -39,7 +39,9 @@ type lotOut struct {
 	AcceptAt       number        `json:"accept_at_or_below_mg_per_kg"`
 	Routes         []routeOut    `json:"routes"`
 	Excluded       []excludedOut `json:"excluded"`
-	BreakEven      struct{}      `json:"break_even"`
+	BreakEven      breakEvensOut `json:"break_even"`
+	Front          []frontOut    `json:"front"`
+	WhatIf         *whatIfOut    `json:"what_if"`
 	NothingToDo    string        `json:"nothing_to_do,omitempty"`
 	CannotShow     string        `json:"cannot_show,omitempty"`
 	Warnings       []string      `json:"warnings,omitempty"`
@@ -173,6 +175,9 @@ func showLot(l *study.Lot) lotOut {
 		Excluded:       make([]excludedOut, len(l.Excluded)),
 		NothingToDo:    l.NothingToDo,
 		CannotShow:     l.CannotShow,
+		BreakEven:      showBreakEvens(l),
+		Front:          showFront(l),
+		WhatIf:         showWhatIf(l),
 		Warnings:       l.Warnings,
 	}
 	for i := range l.Routes {

@@ -75,6 +75,9 @@ func (p *page) lot(n int, r *study.Report, l *study.Lot) {
 		p.verdict(r, l)
 		p.ranking(r, l)
 		p.missing(l)
+		p.breakEvens(l)
+		p.front(l)
+		p.whatIf(r, l)
 	}
 	p.excluded(l)
 	p.cautions(l)

@@ -19,11 +19,16 @@ const (
 // Run carries out the route with the given settings. It is an error if the
 // physics refuses a step; a route that misses its target is not.
 func (c *Case) Run(r Route, s Settings) (Run, error) {
+	return c.RunTo(r, s, c.Goal())
+}
+
+// RunTo is Run with another goal (kg/kg) for the last step than the lot's own.
+func (c *Case) RunTo(r Route, s Settings, last float64) (Run, error) {
 	run := Run{Route: r, Settings: s, AgentKg: map[string]float64{}}
 	lot := c.Feed
 	handOver := make([]float64, 0, len(r))
 	for i, stage := range r {
-		goal := c.Goal()
+		goal := last
 		if i < len(r)-1 {
 			goal = s.HandOverMgPerKg[i] * 1e-6
 		}

@@ -6,6 +6,7 @@ import (
 	"slices"
 
 	"parch/internal/routes"
+	"parch/internal/steps"
 )
 
 // Field are routes that compete for the least cost a litre.
@@ -20,6 +21,8 @@ type Won struct {
 	Route routes.Route
 	Run   routes.Run
 	Cost  float64 // a litre; +Inf where no route reaches the limit
+
+	AtLeast float64 // what the field costs at least, with the routes that were left alone
 }
 
 // ID of the route, "" where none reaches the limit.
@@ -31,39 +34,79 @@ func (w Won) ID() string {
 }
 
 // Cheapest tunes the routes until the next cannot win. floors are costs that a
-// route cannot fall below, by its id; where one is known, the routes are taken in
-// that order and those above the best are left alone. What was found, or the floor
-// where a route was left alone, is returned by id. The route that is cheapest at
-// equal cost is the first of the field.
-func (f Field) Cheapest(floors map[string]float64) (Won, map[string]float64, error) {
-	order := make([]int, len(f.Routes))
-	ids := make([]string, len(f.Routes))
+// route cannot fall below, by its id; what its steps before the last cost is a
+// floor too. The routes are taken in the order of their floors, and those above the
+// best, or above most, are left alone. What was found, or the floor where a route
+// was left alone, is returned by id; +Inf where a route cannot be had. At equal
+// cost the first in the field wins.
+func (f Field) Cheapest(floors map[string]float64, most float64) (Won, map[string]float64, error) {
+	lots := make([]ticket, len(f.Routes))
 	for i, r := range f.Routes {
-		order[i], ids[i] = i, r.ID()
+		id := r.ID()
+		lots[i] = ticket{r, id, math.Max(floors[id], f.Tuner.LeastCost(r))}
 	}
-	slices.SortStableFunc(order, func(a, b int) int {
-		return compareFloats(floors[ids[a]], floors[ids[b]])
-	})
-	best := Won{Cost: math.Inf(1)}
+	slices.SortStableFunc(lots, func(a, b ticket) int { return compareFloats(a.floor, b.floor) })
+	best := Won{Cost: math.Inf(1), AtLeast: math.Inf(1)}
 	found := map[string]float64{}
-	for _, i := range order {
-		if floor := floors[ids[i]]; floor > best.Cost {
-			found[ids[i]] = floor
+	for _, l := range lots {
+		if l.floor > best.Cost || l.floor > most {
+			found[l.id] = l.floor
+			best.AtLeast = math.Min(best.AtLeast, l.floor)
 			continue
 		}
-		run, cost, err := f.cost(f.Routes[i], ids[i])
+		run, cost, err := f.cost(l.route, l.id)
 		if err != nil {
 			return best, nil, err
 		}
-		if !math.IsInf(cost, 1) {
-			found[ids[i]] = cost
-		}
+		found[l.id] = cost
 		if cost < best.Cost {
-			best = Won{f.Routes[i], run, cost}
+			best.Route, best.Run, best.Cost = l.route, run, cost
 		}
 	}
+	best.AtLeast = math.Min(best.AtLeast, best.Cost)
 	return best, found, nil
 }
+
+// ticket is a route with a cost that it cannot fall below.
+type ticket struct {
+	route routes.Route
+	id    string
+	floor float64
+}
+
+// LeastCost is a cost a litre that a route cannot fall below: that of its steps
+// before the last, each doing the least it can. Costs only add up along a route and
+// its litres only shrink. +Inf where those steps refuse the lot.
+func (t *Tuner) LeastCost(r routes.Route) float64 {
+	head := r[:len(r)-1]
+	if len(head) == 0 || has(head, steps.Soak) || has(head, steps.Column) {
+		return 0
+	}
+	s := blank(head)
+	for _, place := range places(r) {
+		if place < len(head)-1 {
+			s.HandOverMgPerKg[place] = t.Case.Feed.Water() * 1e6
+		}
+	}
+	run, err := t.Case.RunTo(head, s, t.Case.Feed.Water()*leastEffort)
+	if errors.Is(err, routes.ErrRefused) {
+		return math.Inf(1)
+	}
+	if err != nil {
+		return 0 // what it costs is seen when it is tuned
+	}
+	if t.Site != nil {
+		t.Site.Apply(&run, t.Case.Lot.BatchesPerYear)
+	}
+	cost, err := Cost.Of(&run, t.Book, t.Case.Lot.BatchesPerYear)
+	if err != nil {
+		return 0
+	}
+	return cost
+}
+
+// leastEffort is the share of the water that a step is to leave that does the least.
+const leastEffort = 1 - 1e-6
 
 func compareFloats(a, b float64) int {
 	switch {

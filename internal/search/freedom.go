@@ -9,10 +9,11 @@ import (
 )
 
 // axis is a free setting with a few values, in an order in which neighbours are
-// alike.
+// alike. A late one matters little and is tried where the rest is settled.
 type axis struct {
 	count int
 	set   func(s *routes.Settings, value int)
+	late  bool
 }
 
 // spot is one choice of every free setting: the place on each axis, and ln(water)
@@ -64,8 +65,8 @@ func (t *Tuner) axes(r routes.Route, stands []stand) (all []axis) {
 		count[stage.Kind]++
 		switch stage.Kind {
 		case steps.Trap:
-			all = append(all, oneOf(t.receivers(), func(s *routes.Settings, key string) { s.Receiver[k] = key }))
-			all = append(all, oneOf(t.Case.ReceiverTemperatures(), func(s *routes.Settings, c float64) { s.ReceiverC[k] = c }))
+			all = append(all, later(oneOf(t.receivers(), func(s *routes.Settings, key string) { s.Receiver[k] = key })))
+			all = append(all, later(oneOf(t.Case.ReceiverTemperatures(), func(s *routes.Settings, c float64) { s.ReceiverC[k] = c })))
 		case steps.Forerun:
 			all = append(all, oneOf(t.Case.ColumnStages(), func(s *routes.Settings, n int) { s.Stages[k] = n }))
 		case steps.Soak:
@@ -88,7 +89,12 @@ func (t *Tuner) receivers() []string {
 }
 
 func oneOf[T any](values []T, set func(*routes.Settings, T)) axis {
-	return axis{len(values), func(s *routes.Settings, i int) { set(s, values[i]) }}
+	return axis{count: len(values), set: func(s *routes.Settings, i int) { set(s, values[i]) }}
+}
+
+func later(a axis) axis {
+	a.late = true
+	return a
 }
 
 // afterUse is what may be done with a sieve. One that is activated in the oven

@@ -3,6 +3,7 @@ package search
 import (
 	"math"
 	"reflect"
+	"slices"
 
 	"parch/internal/routes"
 )
@@ -18,32 +19,52 @@ const (
 // everywhere scans the hand-overs coarsely, each point with the axes found best at
 // its neighbour and around them, and refines around the best.
 func (g *tuning) everywhere() {
-	grid := g.grid()
-	for i, u := range grid {
+	for i, u := range g.grid() {
 		start := spot{make([]int, len(g.axes)), u}
-		if i > 0 && !math.IsInf(g.best.score, 1) {
+		if i > 0 && g.found() {
 			start.at = g.best.spot.clone().at
-			g.descend(start)
+			g.descend(start, early)
 			continue
 		}
 		g.allAxes(start)
 	}
-	if len(g.places) == 0 || math.IsInf(g.best.score, 1) {
+	if !g.found() {
 		return
 	}
 	g.refine(1.0 / (coarsePoints - 1))
-	g.allAxes(g.best.spot.clone())
-	g.refine(0.25 / (coarsePoints - 1))
+	before := g.best.score
+	if g.allAxes(g.best.spot.clone()); g.hasLate() {
+		g.descend(g.best.spot.clone(), all)
+	}
+	if g.best.score < before {
+		g.refine(0.25 / (coarsePoints - 1))
+	}
 }
+
+// found reports whether any spot could be run.
+func (g *tuning) found() bool { return !math.IsInf(g.best.score, 1) }
+
+func (g *tuning) hasLate() bool {
+	return slices.ContainsFunc(g.axes, func(a axis) bool { return a.late })
+}
+
+// Which axes are walked.
+const (
+	early = false
+	all   = true
+)
 
 // around looks near a spot.
 func (g *tuning) around(s spot) {
-	g.descend(s)
-	if len(g.places) == 0 || math.IsInf(g.best.score, 1) {
+	g.descend(s, early)
+	if !g.found() {
 		return
 	}
 	g.refine(0.25 / (coarsePoints - 1))
-	g.descend(g.best.spot.clone())
+	before := g.best.score
+	if g.descend(g.best.spot.clone(), all); g.best.score < before {
+		g.refine(0.25 / (coarsePoints - 1))
+	}
 }
 
 // grid are the coarse hand-overs: a line for one, a lattice in which the water
@@ -77,10 +98,18 @@ func (g *tuning) allAxes(s spot) {
 		g.sweep(s)
 		return
 	}
-	at := spot{make([]int, len(g.axes)), s.u}
+	at := s.clone()
+	for i, a := range g.axes {
+		if !a.late {
+			at.at[i] = 0
+		}
+	}
 	for range product {
 		g.try(at)
 		for i := len(at.at) - 1; i >= 0; i-- { // the last axis turns fastest
+			if g.axes[i].late {
+				continue
+			}
 			if at.at[i]++; at.at[i] < g.axes[i].count {
 				break
 			}
@@ -92,7 +121,9 @@ func (g *tuning) allAxes(s spot) {
 func (g *tuning) combinations() int {
 	product := 1
 	for _, a := range g.axes {
-		product *= a.count
+		if !a.late {
+			product *= a.count
+		}
 	}
 	return product
 }
@@ -104,7 +135,10 @@ func (g *tuning) sweep(s spot) {
 	lowest := g.try(s)
 	for better := true; better; {
 		better = false
-		for i := range g.axes {
+		for i, a := range g.axes {
+			if a.late {
+				continue
+			}
 			before := lowest
 			lowest = g.along(s, i, lowest)
 			better = better || lowest < before
@@ -114,13 +148,16 @@ func (g *tuning) sweep(s spot) {
 
 // descend moves along the axes while that helps: from neighbour to neighbour, or
 // over all values of a short axis.
-func (g *tuning) descend(s spot) {
+func (g *tuning) descend(s spot, which bool) {
 	s = s.clone()
 	lowest := g.try(s)
 	for better := true; better; {
 		better = false
 		for i, a := range g.axes {
 			before := lowest
+			if a.late && which == early {
+				continue
+			}
 			if a.count <= shortAxis {
 				lowest = g.along(s, i, lowest)
 			} else {
@@ -166,6 +203,9 @@ func (g *tuning) downhill(s spot, i int, lowest float64) float64 {
 
 // refine moves the hand-overs of the best spot within a share of their range.
 func (g *tuning) refine(share float64) {
+	if len(g.places) == 0 {
+		return
+	}
 	at := g.best.spot.clone()
 	lo, hi := make([]float64, len(g.lo)), make([]float64, len(g.lo))
 	for i := range g.lo {

@@ -118,7 +118,7 @@ func (t *Tuner) TuneFrom(r routes.Route, warm *routes.Settings) (routes.Run, err
 
 // worthIt drops a start where everything is tried out anyway.
 func (g *tuning) worthIt(warm *routes.Settings) *routes.Settings {
-	if len(g.places) == 0 && g.combinations() <= mostProduct {
+	if len(g.places) == 0 && g.combinations() <= mostProduct && !g.hasLate() {
 		return nil
 	}
 	return warm
@@ -283,7 +283,7 @@ func refined(f func(u []float64) float64, lo, hi []float64, most int) {
 		}
 		return f(u)
 	}
-	limits := &optimize.Settings{FuncEvaluations: most, Converger: &optimize.FunctionConverge{Relative: 1e-7, Iterations: 12}}
+	limits := &optimize.Settings{FuncEvaluations: most, Converger: &optimize.FunctionConverge{Relative: 1e-7, Iterations: 8}}
 	// The best point seen is kept by f itself; running into the limit is no failure.
 	_, _ = optimize.Minimize(optimize.Problem{Func: inside}, make([]float64, len(lo)), limits, &optimize.NelderMead{SimplexSize: 1})
 }

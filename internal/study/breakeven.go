@@ -13,6 +13,7 @@ import (
 	"parch/internal/job"
 	"parch/internal/routes"
 	"parch/internal/search"
+	"parch/internal/steps"
 )
 
 // Keys of the break-evens, as in the JSON.
@@ -46,6 +47,7 @@ func (q *question) breakEvens(ctx context.Context) error {
 			return err
 		}
 		if b != nil {
+			b.Answer = b.answer()
 			q.lot.BreakEvens = append(q.lot.BreakEvens, *b)
 		}
 	}
@@ -56,24 +58,58 @@ func (q *question) breakEvens(ctx context.Context) error {
 type sides struct {
 	at         func(x float64) *search.Tuner
 	field      func(t *search.Tuner, first bool) search.Field
+	floors     *floors
 	one, other search.Won
 }
 
+// floors are what routes cost at a figure already asked for. The cost rises with
+// the figure, or falls with it: what was found on the cheap side is a floor.
+type floors struct {
+	falls bool // the cost falls as the figure rises
+	known []known
+}
+
+type known struct {
+	x    float64
+	cost map[string]float64
+}
+
+// at joins what is known on the cheap side of x, the nearest figure last.
+func (f *floors) at(x float64) map[string]float64 {
+	var low map[string]float64
+	for _, k := range f.known {
+		if f.falls == (k.x >= x) || k.x == x {
+			low = highest(low, k.cost)
+		}
+	}
+	return low
+}
+
+// learn keeps what was found. A route that cannot be had at one figure may be had
+// at another.
+func (f *floors) learn(x float64, cost map[string]float64) {
+	f.known = append(f.known, known{x, maps.Clone(cost)})
+	maps.DeleteFunc(f.known[len(f.known)-1].cost, func(_ string, c float64) bool { return math.IsInf(c, 1) })
+}
+
 func (s *sides) duel(x float64) (one, other float64, err error) {
-	t := s.at(x)
-	if s.one, _, err = s.field(t, true).Cheapest(nil); err != nil {
+	t, low := s.at(x), s.floors.at(x)
+	var found map[string]float64
+	if s.other, found, err = s.field(t, false).Cheapest(low, math.Inf(1)); err != nil {
 		return 0, 0, err
 	}
-	if s.other, _, err = s.field(t, false).Cheapest(nil); err != nil {
+	s.floors.learn(x, found)
+	if s.one, found, err = s.field(t, true).Cheapest(low, s.other.Cost); err != nil {
 		return 0, 0, err
 	}
-	return s.one.Cost, s.other.Cost, nil
+	s.floors.learn(x, found)
+	return s.one.AtLeast, s.other.Cost, nil
 }
 
 // families asks where the cheapest of one kind of routes changes places with the
 // cheapest of another kind.
-func (q *question) families(b BreakEven, at func(float64) *search.Tuner, first, second func(routes.Route) bool) (*BreakEven, error) {
-	s := sides{at: at, field: func(t *search.Tuner, isFirst bool) search.Field {
+func (q *question) families(b BreakEven, known *floors, at func(float64) *search.Tuner, first, second func(routes.Route) bool) (*BreakEven, error) {
+	s := sides{at: at, floors: known, field: func(t *search.Tuner, isFirst bool) search.Field {
 		if isFirst {
 			return q.field(t, first)
 		}
@@ -83,15 +119,28 @@ func (q *question) families(b BreakEven, at func(float64) *search.Tuner, first, 
 	if err != nil {
 		return nil, err
 	}
-	at1 := c.At
+	b.At, b.Never, b.Step = c.At, c.Never, c.Step
+	below, above := c.At*(1-beside), c.At*(1+beside)
 	if c.Never {
-		at1 = math.Min(math.Max(b.Now, b.From), b.To)
+		below = math.Min(math.Max(b.Now, b.From), b.To)
+		above = below
 	}
-	if _, _, err := s.duel(at1); err != nil {
+	if b.Below, err = s.winner(below); err != nil {
 		return nil, err
 	}
-	b.settle(c, s.one.ID(), s.other.ID())
-	return &b, nil
+	b.Above, err = s.winner(above)
+	return &b, err
+}
+
+// beside a break-even, as a share of it, one looks who is ahead.
+const beside = 1e-6
+
+// winner is the cheaper side's route.
+func (s *sides) winner(x float64) (string, error) {
+	if one, other, err := s.duel(x); err != nil || one < other {
+		return s.one.ID(), err
+	}
+	return s.other.ID(), nil
 }
 
 // settle enters the crossing of two sides.
@@ -124,7 +173,7 @@ func (q *question) startWater() (*BreakEven, error) {
 	at := func(x float64) *search.Tuner {
 		return q.withLot(func(l *job.Lot) { l.Water, l.Saturated = x*1e-6, false })
 	}
-	return q.families(b, at, isPreDried, isDirect)
+	return q.families(b, &floors{}, at, isPreDried, isDirect)
 }
 
 const litresPerM3, monthsPerYear = 1e3, 12
@@ -136,7 +185,7 @@ func (q *question) volume() (*BreakEven, error) {
 	at := func(x float64) *search.Tuner {
 		return q.withLot(func(l *job.Lot) { l.BatchesPerYear = x * monthsPerYear / litres })
 	}
-	return q.families(b, at, isDrying, isBuy)
+	return q.families(b, &floors{falls: true}, at, isDrying, isBuy)
 }
 
 func (q *question) technician() (*BreakEven, error) {
@@ -146,7 +195,7 @@ func (q *question) technician() (*BreakEven, error) {
 	}
 	now := price.PerUnit.InexactFloat64()
 	b := BreakEven{Key: Technician, Unit: q.job.Currency + "/h", Now: now, From: now / rateFactor, To: now * rateFactor, What: "technician rate at which the best route changes"}
-	return q.winner(b, func(x float64) *search.Tuner { return q.priced(x/now, "technician") })
+	return q.winner(b, q.rising(b), func(x float64) *search.Tuner { return q.priced(x/now, "technician") })
 }
 
 // sieves of the catalog in the routes on offer.
@@ -185,7 +234,7 @@ func (q *question) sievePrice() (*BreakEven, error) {
 	b := BreakEven{Key: SievePrice, Unit: q.job.Currency + "/kg", Now: now, From: now / sieveFactor, To: now * sieveFactor,
 		What: "price of " + q.k.Catalog.Agents[key].Name + ", the other sieves rising and falling with it, at which the best route changes"}
 	sieves := q.sieves()
-	return q.winner(b, func(x float64) *search.Tuner { return q.priced(x/now, sieves...) })
+	return q.winner(b, q.rising(b), func(x float64) *search.Tuner { return q.priced(x/now, sieves...) })
 }
 
 // priced is the tuner with the prices of some items multiplied.
@@ -207,7 +256,7 @@ func (q *question) sieveUses() (*BreakEven, error) {
 	}
 	b := BreakEven{Key: SieveUses, Unit: "uses", Now: q.k.Catalog.Agents[key].Lives.SI, From: 1, To: 50, What: "uses of a charge of sieve, dried in the oven between them, at which the best route changes"}
 	sieves := q.sieves()
-	return q.winner(b, func(x float64) *search.Tuner {
+	return q.winner(b, q.unsieved(), func(x float64) *search.Tuner {
 		cat := *q.k.Catalog
 		cat.Agents = maps.Clone(cat.Agents)
 		for _, key := range sieves {
@@ -221,18 +270,58 @@ func (q *question) sieveUses() (*BreakEven, error) {
 	})
 }
 
+// rising are the floors of a price: above the present one a route costs no less
+// than now; below it, the cost being concave in a price, no less than that share.
+func (q *question) rising(b BreakEven) func(x float64) map[string]float64 {
+	return func(x float64) map[string]float64 {
+		return q.scaled(math.Min(1, x/b.Now), nil)
+	}
+}
+
+// unsieved are the floors of routes whose sieve costs nothing.
+func (q *question) unsieved() func(x float64) map[string]float64 {
+	low := q.scaled(1, func(r *Route) float64 {
+		if !anySieve(r.Run.Route) {
+			return 1
+		}
+		left := decimal.Zero
+		for _, head := range []steps.Head{steps.Labour, steps.Testing, steps.Equipment, steps.Purchase} {
+			left = left.Add(r.Bill.ByHead[head])
+		}
+		return left.Div(r.Bill.PerBatch).InexactFloat64()
+	})
+	return func(float64) map[string]float64 { return low }
+}
+
+// scaled are the present costs of the routes, less a margin for how well they are
+// tuned, times a factor.
+func (q *question) scaled(factor float64, share func(*Route) float64) map[string]float64 {
+	const tuned = 0.99
+	low := map[string]float64{}
+	for id, cost := range q.now {
+		low[id] = tuned * factor * cost
+	}
+	for i := range q.lot.Routes {
+		if r := &q.lot.Routes[i]; share != nil && r.Bill.Priced() && r.Bill.PerBatch.IsPositive() {
+			low[r.ID] *= share(r)
+		}
+	}
+	return low
+}
+
 // winner asks at which figure the cheapest route of all changes. The order of two
 // routes is solved for; where a third is cheaper there, it takes the place of the
 // second, until none is.
-func (q *question) winner(b BreakEven, at func(float64) *search.Tuner) (*BreakEven, error) {
-	now, _, err := q.field(at(b.Now), nil).Cheapest(nil)
-	if err != nil {
+func (q *question) winner(b BreakEven, low func(x float64) map[string]float64, at func(float64) *search.Tuner) (*BreakEven, error) {
+	cheapest := func(x float64) (search.Won, error) {
+		won, _, err := q.field(at(x), nil).Cheapest(low(x), math.Inf(1))
+		return won, err
+	}
+	now, err := cheapest(b.Now)
+	if err != nil || now.Route == nil {
 		return nil, err
 	}
-	if now.Route == nil {
-		return nil, nil
-	}
-	rival, near, err := q.rival(b, at, now.ID())
+	rival, near, err := rivalOf(b, cheapest, now.ID())
 	if err != nil {
 		return nil, err
 	}
@@ -246,7 +335,7 @@ func (q *question) winner(b BreakEven, at func(float64) *search.Tuner) (*BreakEv
 		if err != nil {
 			return nil, err
 		}
-		third, _, err := q.field(at(c.At), nil).Cheapest(nil)
+		third, err := cheapest(c.At)
 		if err != nil {
 			return nil, err
 		}
@@ -275,8 +364,8 @@ func (q *question) pair(at func(float64) *search.Tuner, one, other routes.Route)
 	}
 }
 
-// rival is the nearest other winner on either side of the present figure.
-func (q *question) rival(b BreakEven, at func(float64) *search.Tuner, now string) (search.Won, float64, error) {
+// rivalOf is the nearest other winner on either side of the present figure.
+func rivalOf(b BreakEven, cheapest func(x float64) (search.Won, error), now string) (search.Won, float64, error) {
 	const each = 3 // points on either side
 	for i := 1; i <= each; i++ {
 		for _, end := range []float64{b.To, b.From} {
@@ -284,7 +373,7 @@ func (q *question) rival(b BreakEven, at func(float64) *search.Tuner, now string
 			if x == b.Now {
 				continue
 			}
-			won, _, err := q.field(at(x), nil).Cheapest(nil)
+			won, err := cheapest(x)
 			if err != nil {
 				return won, 0, err
 			}

@@ -92,7 +92,7 @@ func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog
 	l := Lot{
 		Job: lot, Solvent: k.Solvent,
 		AcceptAt: k.Limit.AcceptAt, CannotShow: k.Limit.CannotShow, Uncertainty: k.Limit.Uncertainty, Detection: k.Assay.DetectionLimit, Injections: k.Assay.Injections,
-		Warnings: lotWarnings(k),
+		Warnings: lotWarnings(k), costs: map[string]float64{},
 	}
 	if k.Dry() {
 		l.NothingToDo = fmt.Sprintf("nothing to do: the reading of %s is at or below the %s at which a target of %s is accepted; it rests on that Karl Fischer reading of a clear sample%s",
@@ -128,6 +128,10 @@ func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog
 		}
 		l.Routes = append(l.Routes, route)
 		l.offered = append(l.offered, r)
+		l.costs[route.ID] = math.Inf(1)
+		if route.Meets() && route.Bill.Priced() {
+			l.costs[route.ID] = route.Bill.PerLitre.InexactFloat64()
+		}
 	}
 	if l.Routes, err = ranked(l.Routes, tuner); err != nil {
 		return Lot{}, err

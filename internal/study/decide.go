@@ -2,6 +2,7 @@ package study
 
 import (
 	"context"
+	"math"
 	"slices"
 
 	"golang.org/x/sync/errgroup"
@@ -48,6 +49,7 @@ type question struct {
 	site    *costs.Arrangement
 	offered []routes.Route
 	warm    map[string]routes.Settings
+	now     map[string]float64 // cost a litre of each route as things are; +Inf where it cannot be had
 }
 
 func newQuestion(r *Report, l *Lot, c *catalog.Catalog) (*question, error) {
@@ -57,8 +59,9 @@ func newQuestion(r *Report, l *Lot, c *catalog.Catalog) (*question, error) {
 	if err != nil {
 		return nil, err
 	}
-	q := &question{lot: l, job: r.Job, k: k, book: r.Book, site: costs.NewArrangement(c, r.Job), warm: map[string]routes.Settings{}}
-	for _, route := range l.offered {
+	q := &question{lot: l, job: r.Job, k: k, book: r.Book, site: costs.NewArrangement(c, r.Job), warm: map[string]routes.Settings{}, now: map[string]float64{}}
+	offered, _ := k.Candidates()
+	for _, route := range offered {
 		if route[0].Kind != steps.Settle {
 			q.offered = append(q.offered, route)
 		}
@@ -66,7 +69,18 @@ func newQuestion(r *Report, l *Lot, c *catalog.Catalog) (*question, error) {
 	for i := range l.Routes {
 		q.warm[l.Routes[i].ID] = l.Routes[i].Run.Settings
 	}
-	return q, nil
+	if lot == l.Job && r.Job.Objective == string(search.Cost) {
+		for _, route := range q.offered {
+			if cost, ok := l.costs[route.ID()]; ok {
+				q.now[route.ID()] = cost
+			} else {
+				q.now[route.ID()] = math.Inf(1)
+			}
+		}
+		return q, nil
+	}
+	_, q.now, err = q.field(q.tuner(k, q.book), nil).Cheapest(nil, math.Inf(1))
+	return q, err
 }
 
 func (q *question) tuner(k *routes.Case, book costs.Book) *search.Tuner {

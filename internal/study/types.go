@@ -47,8 +47,9 @@ type Lot struct {
 	WhatIf      *WhatIf      // nil where there is nothing to dry
 	Warnings    []string
 
-	offered []routes.Route // that were run
-	Doubts  []Mover        // of the best route, the largest first; empty without draws
+	offered []routes.Route     // that were run
+	costs   map[string]float64 // of them, a litre; +Inf where the limit is missed or a price is not known
+	Doubts  []Mover            // of the best route, the largest first; empty without draws
 }
 
 // Route is one compared route.

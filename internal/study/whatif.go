@@ -54,7 +54,7 @@ func (q *question) cell(start, target float64, floors map[string]float64) (WhatI
 	offered, _ := t.Case.Candidates()
 	f := q.field(t, nil)
 	f.Routes = offered
-	won, found, err := f.Cheapest(floors)
+	won, found, err := f.Cheapest(floors, math.Inf(1))
 	if err != nil {
 		return WhatIfCell{}, nil, err
 	}
@@ -76,12 +76,12 @@ func around(value float64, factors []float64, most float64) (all []float64) {
 
 // highest joins floors.
 func highest(a, b map[string]float64) map[string]float64 {
-	if a == nil {
-		return b
-	}
 	joined := map[string]float64{}
 	for _, m := range []map[string]float64{a, b} {
 		for id, x := range m {
+			if math.IsInf(x, 1) {
+				continue // what cannot be had on one lot may be had on another
+			}
 			joined[id] = math.Max(joined[id], x)
 		}
 	}

@@ -1,0 +1,69 @@
+package report
+
+import (
+	"math"
+	"strconv"
+	"strings"
+
+	"parch/internal/quantity"
+	"parch/internal/study"
+)
+
+// breakEvens prints where routes change places.
+func (p *page) breakEvens(l *study.Lot) {
+	if len(l.BreakEvens) == 0 {
+		return
+	}
+	p.heading("Break-evens, by cost, the rest as it is:")
+	for _, b := range l.BreakEvens {
+		if b.Answer != "" {
+			p.say(5, 4, "%s: %s.", sentence(b.What), b.Answer)
+		}
+	}
+}
+
+// front prints what is given up for what: the routes that no other beats or equals
+// in cost, attended hours, waste and energy at once.
+func (p *page) front(l *study.Lot) {
+	var best, beaten []string
+	for _, f := range l.Front {
+		if f.DominatedBy == "" {
+			best = append(best, f.ID)
+		} else {
+			beaten = append(beaten, f.ID+" by "+f.DominatedBy)
+		}
+	}
+	if len(best) == 0 {
+		return
+	}
+	p.heading("Trade-off of cost, attended hours, waste and energy:")
+	p.say(5, 4, "No route beats these in all four: %s.", strings.Join(best, ", "))
+	if p.all && len(beaten) > 0 {
+		p.say(5, 4, "Beaten in all four: %s.", strings.Join(beaten, "; "))
+	}
+}
+
+// whatIf prints the cheapest route of other starts and targets.
+func (p *page) whatIf(r *study.Report, l *study.Lot) {
+	if l.WhatIf == nil || !p.all {
+		return
+	}
+	p.heading("The cheapest route from other starts (mg/kg, down) to other targets (across), " + r.Job.Currency + " a litre:")
+	columns := []column{{"From", true, 0}}
+	for _, t := range l.WhatIf.Target {
+		columns = append(columns, column{"to " + quantity.Significant(t*mgPerKg, 3), false, 20})
+	}
+	var rows [][]string
+	for i, w := range l.WhatIf.StartWater {
+		row := []string{quantity.Significant(w*mgPerKg, 3)}
+		for _, c := range l.WhatIf.Cells[i] {
+			if c.ID == "" || math.IsNaN(c.CostPerLitre) {
+				row = append(row, c.Note)
+				continue
+			}
+			row = append(row, brokenAtPlus(c.ID, 18)+"\n"+strconv.FormatFloat(c.CostPerLitre, 'f', 2, 64))
+		}
+		rows = append(rows, row)
+	}
+	p.table(columns, rows)
+}
