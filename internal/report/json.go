@@ -40,8 +40,6 @@ type lotOut struct {
 	Routes         []routeOut    `json:"routes"`
 	Excluded       []excludedOut `json:"excluded"`
 	BreakEven      breakEvensOut `json:"break_even"`
-	Front          []frontOut    `json:"front"`
-	WhatIf         *whatIfOut    `json:"what_if"`
 	NothingToDo    string        `json:"nothing_to_do,omitempty"`
 	CannotShow     string        `json:"cannot_show,omitempty"`
 	Warnings       []string      `json:"warnings,omitempty"`
@@ -176,8 +174,6 @@ func showLot(l *study.Lot) lotOut {
 		NothingToDo:    l.NothingToDo,
 		CannotShow:     l.CannotShow,
 		BreakEven:      showBreakEvens(l),
-		Front:          showFront(l),
-		WhatIf:         showWhatIf(l),
 		Warnings:       l.Warnings,
 	}
 	for i := range l.Routes {

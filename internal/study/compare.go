@@ -25,6 +25,8 @@ const Version = "0.1.0"
 type Options struct {
 	// Settings of an earlier run, by lot name and route id, used instead of tuning.
 	Settings map[string]map[string]routes.Settings
+	// RankingOnly leaves out the break-evens, the trade-off and the grid of other lots.
+	RankingOnly bool
 }
 
 // Compare runs every sensible route of every lot and ranks them.
@@ -40,8 +42,10 @@ func Compare(ctx context.Context, j *job.Job, c *catalog.Catalog, o Options) (*R
 	if err := r.buy(c); err != nil {
 		return nil, err
 	}
-	if err := r.decide(ctx, c); err != nil {
-		return nil, err
+	if !o.RankingOnly {
+		if err := r.decide(ctx, c); err != nil {
+			return nil, err
+		}
 	}
 	r.Book = usedPrices(r)
 	r.Sources, r.Weak = provenance(r, c)

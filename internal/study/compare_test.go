@@ -18,7 +18,14 @@ import (
 	"parch/internal/study"
 )
 
+// compare leaves out what the tests of the ranking do not look at.
 func compare(t testing.TB, yaml string, o study.Options) *study.Report {
+	t.Helper()
+	o.RankingOnly = true
+	return decided(t, yaml, o)
+}
+
+func decided(t testing.TB, yaml string, o study.Options) *study.Report {
 	t.Helper()
 	c, err := catalog.Load()
 	if err != nil {
