@@ -147,7 +147,7 @@ func (l *layout) card(g *grid, lot *lotModel) {
 
 func (l *layout) cardTop(c *cardModel, row int) {
 	g, lot := c.g, c.lot
-	g.across(1, cardField, row, block, fmt.Sprintf("Bench card, lot %d: %s", lot.no, lot.Job.Name))
+	g.across(1, cardField, row, block, fmt.Sprintf("Bench card, lot %d: %s", lot.no, shortened(lot.Job.Name, mostTitle)))
 	g.put(cardLabel, row+1, text(plain, "Route"))
 	g.put(cardText, row+1, text(input, c.list[c.chosen].ID))
 	for k, r := range c.list {

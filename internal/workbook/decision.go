@@ -31,7 +31,7 @@ const (
 
 func (l *layout) decision() *grid {
 	g := newGrid(sheetDecision, "To sign: what is recommended for each lot, why, and what would change it. Routes, costs and ranks follow the prices; sentences are those of the run.",
-		tabResult, checkCell(), 8, 19, 31, 11, 11, 11, 11, 11, 9, 7)
+		tabResult, checkCell(), 7, 19, 31, 11, 11, 11, 10, 10, 11, 7)
 	g.printColumns = decideChance
 	g.mixed, g.frozenRows, g.portrait, g.onePage = true, frameRows, true, true
 	l.banner(g, frameRows+1)
@@ -141,7 +141,7 @@ func (l *layout) pickRow(g *grid, row int, r *routeModel, picks []pick) {
 // decideFull gives a lot its own part of the page.
 func (l *layout) decideFull(g *grid, lot *lotModel) {
 	row := g.next()
-	g.across(1, decideChance, row, block, fmt.Sprintf("Lot %d: %s", lot.no, lot.Job.Name))
+	g.across(1, decideChance, row, block, fmt.Sprintf("Lot %d: %s", lot.no, shortened(lot.Job.Name, mostTitle)))
 	g.across(1, decideChance, row+1, words, capital(lot.asked())+".")
 	l.agreeRow(g, row+2, row+4, lot)
 	l.decideHeading(g, row+3)
@@ -208,6 +208,9 @@ func (l *layout) decideShort(g *grid, lots []*lotModel) {
 		g.across(1, decideChance, g.last()+1, warn, fmt.Sprintf("%d lots more do not fit on this page: see Compare. The signatures below do not cover them.", left))
 	}
 }
+
+// mostTitle is as much of a name as a title line holds.
+const mostTitle = 70
 
 // mostNameShort keeps a lot to two lines.
 const mostNameShort = 50

@@ -21,18 +21,28 @@ var sheetPurposes = [][2]string{
 }
 
 var cautionWords = []string{
-	"This workbook compares; it does not decide and is no procedure. Site rules, safety data sheets, local codes and licensed practice decide.",
+	"A planning aid: it compares, it does not decide and is no procedure. Site rules, safety data sheets, local codes and licensed practice decide.",
 	"Test peroxide formers before heating. Never distil to dryness.",
 	"A computed water content is a forecast: measure each lot before use.",
+	"Prices marked indicative, invented or old are no offers. Ask for offers before ordering.",
+	"What rests on memory, common practice, an assumption or an extrapolation is listed on Sources and marked where it stands.",
 }
 
 var useWords = []string{
-	"Blue cells on Inputs and Prices may be edited. Prices and batches per year are live: bills, costs per litre and ranks follow at once.",
-	"Amounts, water contents, hours and energy are values from the program. When an input that only the program can follow is edited, the sheet shows “run parch again” there and at the top of every sheet.",
-	"The state of all checks stands at the top of every sheet, in words.",
+	"Read Decision first. It names the recommended route of each lot with its reason and is made to be printed and signed.",
+	"Blue cells on Inputs and Prices may be edited. The column “When edited” says of each whether the sheet follows by itself or parch has to be run again; costs, costs per litre and ranks always follow the prices.",
+	"“Run parch again” stands next to the results concerned, and at the top of every sheet, as long as an edited input asks for it. The original value stands beside the blue cell: type it again to undo.",
+	"Ranges, Buying, Bench card and the sentences of Decision belong to the run: after any edit they say so.",
+	"On Bench card choose the route in the blue cell, then print: each lot has one side.",
+	"Found and expected values of all checks stand on Checks; their state stands at the top of every sheet, in words.",
+}
+
+var conventionWords = []string{
 	"Costs are positive, credits negative; water removed is positive. Money is computed exactly and rounded once: the heads of a bill, written to the cent by its running total, add up to the written total.",
 	"Water contents are mg of water per kg of solution. Litres are at the temperature of the lot.",
-	"The sheets are protected against slips, without a password.",
+	"Route ids join the steps with a plus; an agent follows a colon: trap+soak:sieve-3a.",
+	"In charts each route has its own marker and dash as well as its colour; target and limit are lines without markers.",
+	"Decision prints on one page, Bench card on one for each lot. The sheets are protected against slips, without a password.",
 }
 
 // lookWords explains the appearance of cells.
@@ -40,18 +50,23 @@ var lookWords = []struct {
 	look       look
 	name, says string
 }{
-	{input, "input", "may be edited"},
-	{formula, "formula", "computed by the sheet"},
-	{program, "value from the program", "changes only by a new run"},
+	{input, "input", "blue and outlined: may be edited"},
+	{formula, "formula", "black on white: computed by the sheet"},
+	{program, "value from the program", "grey: changes only by a new run"},
+	{field, "", "outlined and empty: to be filled in by hand on paper"},
 	{pass, "holds", "a check holds, a target is reached, a first rank"},
 	{warn, "mind", "edited, indicative or weak"},
-	{fail, "fails", "a check fails, a target is missed"},
+	{fail, "fails", "a check fails, a target is missed, a card is out of date"},
 }
 
 func (l *layout) readMe() *grid {
 	g := newGrid(sheetReadMe, "Ways to dry a bulk solvent, compared: "+oneLine(l.report.Job.Title), tabText, checkCell(), 26, 120)
 	g.put(1, 3, text(plain, "Checks"))
 	g.mixed, g.frozenRows = true, frameRows
+	g.section("What it is")
+	g.say(text(plain, "parch"), "Computes how a bulk solvent can be dried by chains of steps, what each chain costs and how sure that is, and ranks the chains. This workbook is its answer for the job named below.")
+	g.section("Cautions")
+	g.numbered(cautionWords)
 	l.thisRun(g)
 	g.section("How to use it")
 	g.numbered(useWords)
@@ -63,8 +78,8 @@ func (l *layout) readMe() *grid {
 	for _, w := range lookWords {
 		g.say(text(w.look, w.name), w.says)
 	}
-	g.section("Cautions")
-	g.numbered(cautionWords)
+	g.section("Conventions")
+	g.numbered(conventionWords)
 	return g
 }
 
@@ -84,6 +99,7 @@ func (l *layout) thisRun(g *grid) {
 	g.say(text(plain, "Program"), "parch "+r.Version)
 	g.say(text(plain, "Job file"), j.File)
 	g.say(text(plain, "Catalog of"), r.CatalogDate)
+	g.say(text(plain, "Date of the run"), l.runDate()+": of the plan, or else the newest price; the clock of the computer plays no part")
 	draws := "none: figures are single values; sheet Sources says which of them are weak"
 	if r.Draws > 0 {
 		draws = fmt.Sprintf("%d, seed %d", r.Draws, r.Seed)

@@ -146,3 +146,16 @@ func TestSheetsFollowTheSchema(t *testing.T) {
 		}
 	}
 }
+
+// Read me leads to every other sheet, in their order.
+func TestReadMeNamesEverySheet(t *testing.T) {
+	b := readBook(t, written(t, demo(t)))
+	if len(b.sheets) != len(sheetPurposes)+1 {
+		t.Fatalf("%d sheets, %d of them named", len(b.sheets), len(sheetPurposes))
+	}
+	for i, s := range sheetPurposes {
+		if b.sheets[i+1] != s[0] {
+			t.Errorf("sheet %d is %s, Read me names %s", i+2, b.sheets[i+1], s[0])
+		}
+	}
+}
