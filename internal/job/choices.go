@@ -97,10 +97,11 @@ var carriers = []string{
 }
 
 func (r *reader) exclude(n *document.Node) {
-	f := n.Map("steps", "agents")
+	f := n.Map("steps", "agents", "hazards")
 	r.job.Exclude = Exclude{
-		Steps:  r.words(f.Get("steps"), stepKinds, "a step"),
-		Agents: r.words(f.Get("agents"), r.agentKeys(), "a drying agent"),
+		Steps:   r.words(f.Get("steps"), stepKinds, "a step"),
+		Agents:  r.words(f.Get("agents"), r.agentKeys(), "a drying agent"),
+		Hazards: r.words(f.Get("hazards"), Hazards, "a hazard known here"),
 	}
 }
 

@@ -27,7 +27,7 @@ func (r *reader) lots(n *document.Node) {
 
 // lot reads one lot; lines remembers the names that are taken.
 func (r *reader) lot(n *document.Node, lines map[string]int) Lot {
-	f := n.Map("name", "solvent", "batch", "batches", "water", "free water", "target", "not below", "needed within",
+	f := n.Map("name", "solvent", "batch", "batches", "water", "free water", "target", "not below", "needed within", "litres per week",
 		"peroxide", "heater", "sieve history", "vessel height", "reclaimed")
 	lot := Lot{Line: n.Line(), Reclaimed: f.Get("reclaimed").Bool()}
 	if name := f.Get("name"); name != nil {
@@ -79,10 +79,12 @@ func (r *reader) limitsOf(f document.Fields, lot *Lot) {
 		if okTarget && lot.NotBelow >= lot.Target {
 			n.Fail("%s is not below the target (%s)", quantity.Quote(n.Text()), quantity.FormatWater(lot.Target))
 		}
-		r.notYet(n)
 	}
 	if n := f.Get("needed within"); n != nil {
 		lot.NeededWithinS, _ = r.measure(n, quantity.Time, between(60, 366*86400, "1 min to 366 d"))
+	}
+	if n := f.Get("litres per week"); n != nil {
+		lot.WeeklyM3, _ = r.measure(n, quantity.Volume, between(5e-5, 1000, "0.05 L to 1000 m3"))
 	}
 }
 

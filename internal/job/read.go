@@ -98,7 +98,7 @@ func (r *reader) whole(root *document.Node) {
 	}
 	j.Date = f.Get("date").Date()
 	r.rates(f.Get("rates"))
-	j.Objective = r.orWord(f.Get("objective"), "objective", "cost", func(n *document.Node) string { return n.OneOf(Objectives...) })
+	j.Objective = r.orWord(f.Get("objective"), "objective", "cost", r.objective)
 	j.Assurance = 0.9
 	if n := f.Get("assurance"); n != nil {
 		j.Assurance, _ = r.measure(n, quantity.Share, between(0.5, 0.999, "50 % to 99.9 %"))

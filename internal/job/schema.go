@@ -32,7 +32,8 @@ func Schema(cat *catalog.Catalog) ([]byte, error) {
 		words []string
 		path  []string
 	}{
-		{Objectives, []string{"properties", "objective", "enum"}},
+		{Objectives, []string{"$defs", "objective", "enum"}},
+		{Hazards, []string{"properties", "exclude", "properties", "hazards", "items", "enum"}},
 		{storageClasses, []string{"properties", "storage limits", "items", "properties", "class", "enum"}},
 		{stepKinds, []string{"properties", "exclude", "properties", "steps", "items", "enum"}},
 		{r.agentKeys(), []string{"$defs", "agent", "enum"}},

@@ -23,12 +23,9 @@ func (r *reader) site(n *document.Node) {
 		ReceiverK: r.orPractice(f.Get("receiver"), "site.receiver", "site-receiver", quantity.Temperature,
 			between(zeroCelsius+1, zeroCelsius+40, "1 °C to 40 °C; water would freeze in a colder one")),
 		AttendedSecondsPerDay: r.orPractice(f.Get("attended hours per day"), "site.attended hours per day", "site-attended-per-day", quantity.Time,
-			between(1800, 86400, "0.5 h to 24 h")),
+			between(1800, 86400, "0.5 h to 24 h; with less nothing is done, however long a lot may take")),
 		PeroxideLimitKgPerM3: r.orPractice(f.Get("peroxide limit"), "site.peroxide limit", "site-peroxide-limit", quantity.MassConcentration,
 			between(0, 0.1, "0 mg/L to 100 mg/L")),
-	}
-	if key := "attended hours per day"; f.Has(key) {
-		r.notYet(f.Get(key))
 	}
 	r.job.Site.KarlFischer = r.orWord(f.Get("karl fischer"), "site.karl fischer", "coulometric",
 		func(n *document.Node) string { return n.OneOf("coulometric", "volumetric") })

@@ -9,13 +9,14 @@ import (
 // Job is a validated job in SI units.
 type Job struct {
 	File, Title string
-	Date        string  // ISO date of the plan, "" where not given
-	Currency    string  // ISO 4217 code
-	Rates       []Rate  // of exchange, into Currency
-	Objective   string  // cost, time, waste or energy
-	Assurance   float64 // chance of target that a recommended route needs, 0..1
-	Prices      []Price // own prices, in the order given; an item may have several packs
-	PriceFile   string  // the price list that Prices were read from, "" for none
+	Date        string             // ISO date of the plan, "" where not given
+	Currency    string             // ISO 4217 code
+	Rates       []Rate             // of exchange, into Currency
+	Objective   string             // cost, time, waste, energy, or Weighted
+	Weights     map[string]float64 // by objective, adding up to one; nil unless Weighted
+	Assurance   float64            // chance of target that a recommended route needs, 0..1
+	Prices      []Price            // own prices, in the order given; an item may have several packs
+	PriceFile   string             // the price list that Prices were read from, "" for none
 	Site        Site
 	Equipment   []Equipment
 	WriteOff    string  // StraightLine or Annuity
@@ -109,7 +110,7 @@ type StorageLimit struct {
 type Accept struct{ Carriers, Agents, Unsuitable []string }
 
 // Exclude names what the site does not want.
-type Exclude struct{ Steps, Agents []string }
+type Exclude struct{ Steps, Agents, Hazards []string }
 
 // Peroxide is a test result.
 type Peroxide struct {
@@ -128,6 +129,7 @@ type Lot struct {
 	Target          float64 // kg/kg
 	NotBelow        float64 // kg/kg
 	NeededWithinS   float64 // 0 where there is no limit
+	WeeklyM3        float64 // what the apparatus must be able to dry in a week; 0 where not given
 	Peroxide        *Peroxide
 	HeaterW         float64 // 0: the still's own
 	SieveHistory    string  // key of catalog.History, or ""

@@ -22,6 +22,29 @@ func (p *page) breakEvens(l *study.Lot) {
 	}
 }
 
+// nearMisses prints why no route is left.
+func (p *page) nearMisses(l *study.Lot) {
+	if len(l.NearMisses) == 0 {
+		return
+	}
+	p.heading("No route, because:")
+	for _, m := range l.NearMisses {
+		p.say(5, 4, "%s.", m)
+	}
+}
+
+// bookings prints how far the apparatus is taken up where lots share it.
+func (p *page) bookings(r *study.Report) {
+	if len(r.Lots) < 2 || len(r.Bookings) == 0 {
+		return
+	}
+	p.line("")
+	p.say(0, 0, "Apparatus, hours a week by the best routes:")
+	for _, b := range r.Bookings {
+		p.say(2, 2, "%s: %s of %s h (%.0f %%)", b.Item, quantity.Significant(b.Share*b.PerWeek, 3), quantity.Significant(b.PerWeek, 3), 100*b.Share)
+	}
+}
+
 // front prints what is given up for what: the routes that no other beats or equals
 // in cost, attended hours, waste and energy at once.
 func (p *page) front(l *study.Lot) {

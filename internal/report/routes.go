@@ -9,6 +9,7 @@ import (
 
 	"github.com/shopspring/decimal"
 
+	"parch/internal/job"
 	"parch/internal/quantity"
 	"parch/internal/steps"
 	"parch/internal/study"
@@ -91,6 +92,11 @@ func objective(objective, currency string) (aim string, value func(*study.Route)
 	case "energy":
 		return "the least energy", func(r *study.Route) string {
 			return quantity.Significant(r.Run.EnergyKWh, 3) + " kWh a batch"
+		}
+	}
+	if objective == job.Weighted {
+		return "the best mix of the weighed objectives", func(r *study.Route) string {
+			return quantity.Significant(r.Objective, 3) + " of the cheapest route"
 		}
 	}
 	return "the lowest cost", func(r *study.Route) string {
@@ -220,6 +226,9 @@ func (p *page) more(hidden int) {
 }
 
 func stops(r *study.Route) string {
+	if r.Run.TooDry {
+		return "too dry for the band of the target"
+	}
 	if len(r.Run.Outcomes) == 0 {
 		return ""
 	}

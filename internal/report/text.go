@@ -33,6 +33,7 @@ func Text(w io.Writer, r *study.Report, opts Options) error {
 	for i := range r.Lots {
 		p.lot(i+1, r, &r.Lots[i])
 	}
+	p.bookings(r)
 	p.buying(r)
 	p.doubtful(r)
 	p.weak(r.Weak)
@@ -75,6 +76,7 @@ func (p *page) lot(n int, r *study.Report, l *study.Lot) {
 		p.verdict(r, l)
 		p.ranking(r, l)
 		p.missing(l)
+		p.nearMisses(l)
 		p.breakEvens(l)
 		p.front(l)
 		p.whatIf(r, l)

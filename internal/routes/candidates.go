@@ -97,6 +97,9 @@ func (c *Case) refuseStage(s Stage, last bool) (reason, source string) {
 	if slices.Contains(c.Job.Exclude.Steps, string(s.Kind)) {
 		return fmt.Sprintf("the job excludes the step %q", s.Kind), "job"
 	}
+	if reason = c.refuseHazard(s); reason != "" {
+		return reason, "job"
+	}
 	switch s.Kind {
 	case steps.Trap:
 		return c.refuseTrap()

@@ -8,6 +8,7 @@ import (
 	"parch/internal/assay"
 	"parch/internal/job"
 	"parch/internal/mixture"
+	"parch/internal/quantity"
 	"parch/internal/steps"
 	"parch/internal/thermo"
 )
@@ -50,6 +51,11 @@ func (c *Case) With(lot job.Lot) *Case {
 	k := *c
 	k.Lot, k.Feed, k.Limit = lot, feed(c.Mixture, lot, c.Job.Site.RoomK), assay.Accept(lot.Target, c.Assay)
 	k.known = map[stepKey]result{}
+	if from := k.AcceptFrom(); from > 0 && from >= k.Limit.AcceptAt {
+		k.Limit.CannotShow = fmt.Sprintf("cannot be shown: between %s and %s no reading is sure to lie in the band, each end being known to %s",
+			quantity.FormatWater(lot.NotBelow), quantity.FormatWater(lot.Target), quantity.FormatWater(k.Limit.Uncertainty))
+		k.Limit.AcceptAt = math.NaN()
+	}
 	return &k
 }
 
@@ -69,7 +75,7 @@ func (c *Case) practice(key string) float64 { return c.Catalog.Practice[key].SI 
 
 // Dry reports whether the lot passes as it stands.
 func (c *Case) Dry() bool {
-	return c.Lot.FreeWaterM3 == 0 && c.Feed.Water() <= c.Limit.AcceptAt
+	return c.Lot.FreeWaterM3 == 0 && c.Feed.Water() <= c.Limit.AcceptAt && c.Feed.Water() >= c.AcceptFrom()
 }
 
 // Goal is what the last step of a route must reach: the acceptance limit, or

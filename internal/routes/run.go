@@ -118,7 +118,8 @@ func chosenOutlet(kind steps.Kind) bool {
 // finish adds what belongs to the whole route and sums up.
 func (c *Case) finish(run *Run, product steps.Lot) {
 	run.WaterOut = product.Water()
-	run.Meets = run.WaterOut <= c.Limit.AcceptAt*(1+1e-9)
+	run.TooDry = run.WaterOut < c.AcceptFrom()*(1-1e-9)
+	run.Meets = run.WaterOut <= c.Limit.AcceptAt*(1+1e-9) && !run.TooDry
 	run.LitresDelivered = steps.LotVolume(c.Mixture, product, c.Job.Site.RoomK) * 1e3
 	run.add(c.wholeRoute(run)...)
 	for _, o := range run.Outcomes {
@@ -128,6 +129,8 @@ func (c *Case) finish(run *Run, product steps.Lot) {
 	}
 	run.HoursTotal += c.tests(run.Route) * c.practice("karl-fischer-time") / 3600
 	run.HoursAttended, run.EnergyKWh = sum(run.Uses, "technician"), sum(run.Uses, "electricity")
+	run.HoursWaiting = waiting(run.HoursAttended, c.Job.Site.AttendedSecondsPerDay/3600)
+	run.HoursTotal += run.HoursWaiting
 	for _, u := range run.Uses {
 		if u.Head == steps.Waste {
 			run.WasteKg += u.Quantity

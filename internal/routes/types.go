@@ -135,7 +135,9 @@ type Run struct {
 	Uses            []StageUse // every use, with the place of its stage
 	WaterOut        float64    // kg/kg
 	Meets           bool
-	HoursTotal      float64
+	TooDry          bool    // drier than the band of the target allows
+	HoursTotal      float64 // start to finish, with HoursWaiting
+	HoursWaiting    float64 // nights between days of attended work
 	HoursAttended   float64
 	EnergyKWh       float64
 	CoolingWaterL   float64

@@ -100,7 +100,10 @@ func later(a axis) axis {
 // afterUse is what may be done with a sieve. One that is activated in the oven
 // before each use is not thrown away after it: using it again costs nothing more.
 func (t *Tuner) afterUse() []string {
-	if t.Case.Lot.SieveHistoryK > 0 {
+	switch {
+	case !t.Case.MayRegenerate():
+		return []string{routes.Discard}
+	case t.Case.Lot.SieveHistoryK > 0:
 		return []string{routes.Regenerate}
 	}
 	return []string{routes.Regenerate, routes.Discard}

@@ -68,7 +68,8 @@ func (t *Tuner) score(run *routes.Run) (float64, error) {
 	if err != nil || run.Meets {
 		return value, err
 	}
-	return scoreMissed * (1 + math.Max(0, math.Log(run.WaterOut/t.Case.Goal()))), nil
+	off := math.Max(math.Log(run.WaterOut/t.Case.Goal()), math.Log(t.Case.AcceptFrom()/run.WaterOut))
+	return scoreMissed * (1 + math.Max(0, off)), nil
 }
 
 // tuning is the search for the best settings of one route.
@@ -213,6 +214,9 @@ func (g *tuning) remember(err error) {
 func (t *Tuner) inTime(run *routes.Run) error {
 	if limit := t.Case.Lot.NeededWithinS / 3600; limit > 0 && run.HoursTotal > limit*(1+1e-9) {
 		return fmt.Errorf("%w: takes %.3g h, needed within %.3g h", ErrTooSlow, run.HoursTotal, limit)
+	}
+	if full := t.Case.Overbooked(run); full != "" {
+		return fmt.Errorf("%w: %s", ErrTooSlow, full)
 	}
 	return nil
 }

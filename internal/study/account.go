@@ -2,12 +2,14 @@ package study
 
 import (
 	"fmt"
+	"slices"
 	"strings"
 
 	"parch/catalog"
 	"parch/internal/costs"
 	"parch/internal/job"
 	"parch/internal/routes"
+	"parch/internal/search"
 )
 
 // account bills a route and looks at its year and its emissions.
@@ -81,9 +83,16 @@ func (r *Report) buy(c *catalog.Catalog) error {
 }
 
 // Priced is the report with its unpriced routes moved to those not offered, for
-// a reader that needs a total for every route.
+// a reader that needs a total for every route. Where the job weighs objectives, that
+// reader ranks by the cost, which a warning says.
 func (r *Report) Priced() *Report {
 	priced := *r
+	if r.Job.Objective == job.Weighted {
+		byCost := *r.Job
+		byCost.Objective = string(search.Cost)
+		priced.Job = &byCost
+		priced.Warnings = append(slices.Clone(r.Warnings), "the job weighs several objectives; here the routes are ranked by cost, their settings being those of the weights")
+	}
 	priced.Lots = make([]Lot, len(r.Lots))
 	for i, l := range r.Lots {
 		all := l.Routes

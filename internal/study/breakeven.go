@@ -251,7 +251,7 @@ func (q *question) priced(factor float64, items ...string) *search.Tuner {
 
 func (q *question) sieveUses() (*BreakEven, error) {
 	key := q.ownSieve()
-	if key == "" || q.k.Catalog.Agents[key].Lives == nil {
+	if key == "" || q.k.Catalog.Agents[key].Lives == nil || !q.k.MayRegenerate() {
 		return nil, nil
 	}
 	b := BreakEven{Key: SieveUses, Unit: "uses", Now: q.k.Catalog.Agents[key].Lives.SI, From: 1, To: 50, What: "uses of a charge of sieve, dried in the oven between them, at which the best route changes"}

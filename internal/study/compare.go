@@ -42,6 +42,9 @@ func Compare(ctx context.Context, j *job.Job, c *catalog.Catalog, o Options) (*R
 	if err := r.buy(c); err != nil {
 		return nil, err
 	}
+	if err := r.book(c); err != nil {
+		return nil, err
+	}
 	if !o.RankingOnly {
 		if err := r.decide(ctx, c); err != nil {
 			return nil, err
@@ -107,6 +110,9 @@ func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog
 	l.Excluded = excluded
 	site := costs.NewArrangement(c, j)
 	tuner := &search.Tuner{Case: k, Book: book, Objective: search.Objective(j.Objective), Site: site}
+	if err := weigh(tuner, j, offered); err != nil {
+		return Lot{}, err
+	}
 	if given != nil {
 		offered = withSettings(offered, given)
 	} else {
@@ -145,6 +151,11 @@ func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog
 	}
 	if best := l.Best(); best != nil {
 		best.Warnings = append(best.Warnings, afterwards(k, best)...)
+	}
+	if len(l.Routes) == 0 || l.Routes[0].Rank == 0 {
+		if l.NearMisses, err = nearMisses(ctx, k, tuner); err != nil {
+			return Lot{}, err
+		}
 	}
 	l.invest(site)
 	sort.SliceStable(l.Excluded, func(a, b int) bool { return l.Excluded[a].ID < l.Excluded[b].ID })
@@ -189,7 +200,7 @@ func refusal(err error) (reason string, ok bool) {
 func ranked(all []Route, t *search.Tuner) ([]Route, error) {
 	entries := make([]search.Entry, len(all))
 	for i := range all {
-		value, err := t.Objective.Of(&all[i].Run, t.Book, t.Case.Lot.BatchesPerYear)
+		value, err := t.Value(&all[i].Run)
 		if err != nil {
 			return nil, err
 		}

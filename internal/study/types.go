@@ -21,6 +21,7 @@ type Report struct {
 	Lots        []Lot
 	Sources     []catalog.Source // cited, sorted by id
 	Weak        []Weak           // numbers that rest on memory, practice or assumption
+	Bookings    []Booking        // of apparatus by the best routes of all lots together
 	Warnings    []string
 }
 
@@ -44,6 +45,7 @@ type Lot struct {
 	Excluded    []routes.Excluded
 	BreakEvens  []BreakEven
 	Front       []FrontPoint // routes that reach the limit and have their prices
+	NearMisses  []string     // where no route reaches the limit: how near each constraint is missed
 	WhatIf      *WhatIf      // nil where there is nothing to dry
 	Warnings    []string
 
