@@ -18,8 +18,9 @@ func (s *shelf) readPrices() {
 	s.cat.Prices = map[string]Price{}
 	units := s.priceUnits()
 	s.each(pricesFile, func(n *document.Node) {
-		f := n.Map("kept under", "common", "dry grades", "items")
+		f := n.Map("kept under", "common", "dry grades", "pack sizes", "items")
 		list := priceList{date: f.Need("kept under").Date(), common: s.common(f.Get("common"))}
+		list.families = s.families(f.Get("pack sizes"))
 		list.waterMax = s.optional(f.Get("dry grades"), quantity.WaterContent)
 		for _, e := range f.Need("items").Entries() {
 			unit, ok := units[e.Key]
@@ -41,6 +42,7 @@ type priceList struct {
 	date     string
 	common   *Origin
 	waterMax *Value // of dry grades
+	families map[string]family
 }
 
 // priceUnits lists what may be priced and the unit of each.
@@ -62,7 +64,7 @@ func (s *shelf) priceUnits() map[string]string {
 }
 
 func (s *shelf) price(e document.Entry, unit string, list priceList) Price {
-	f := e.Node.Map(with("label", "price", "band", "water")...)
+	f := e.Node.Map(with("label", "price", "band", "water", "packs")...)
 	p := Price{Item: e.Key, Unit: unit, Date: list.date, Origin: s.originOr(f, list.common)}
 	if _, dry := strings.CutSuffix(e.Key, "-dry"); dry {
 		p.WaterMax = list.waterMax
@@ -87,6 +89,7 @@ func (s *shelf) price(e document.Entry, unit string, list priceList) Price {
 	if band := f.Get("band"); band != nil {
 		p.Low, p.High = moneySpan(band, money)
 	}
+	s.packs(f.Get("packs"), &p, list.families)
 	return p
 }
 

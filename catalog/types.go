@@ -131,12 +131,13 @@ func (v Verdict) Allowed() bool { return v.Word == "ok" || v.Word == "caution" }
 // Price is an indicative default price per unit.
 type Price struct {
 	Item, Label string
-	Unit        string // hour, kwh, m3, kg, litre, each, test
-	Amount      string // decimal text per unit
-	Low, High   string // decimal text, "" where no band is given
-	Currency    string // currency of the source
-	Date        string // ISO date the figure is kept under
-	WaterMax    *Value // dry grades: kg/kg
+	Unit        string     // hour, kwh, m3, kg, litre, each, test
+	Amount      string     // decimal text per unit
+	Low, High   string     // decimal text, "" where no band is given
+	Currency    string     // currency of the source
+	Date        string     // ISO date the figure is kept under
+	WaterMax    *Value     // dry grades: kg/kg
+	Packs       []PackSize // the sizes in which it is commonly sold, the smallest first; nil where not known
 	Origin
 }
 

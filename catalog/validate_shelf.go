@@ -17,7 +17,7 @@ const leastDryRatio, mostDryRatio = 2, 6
 // checkPriceRatios compares the price of each dry grade with that of the reagent
 // grade. Prices of the user's own are what they are.
 func (s *shelf) checkPriceRatios() {
-	items := s.root(pricesFile).Map("kept under", "common", "dry grades", "items").Get("items")
+	items := s.root(pricesFile).Map("kept under", "common", "dry grades", "pack sizes", "items").Get("items")
 	for _, e := range items.Entries() {
 		dry, plain := s.cat.Prices[e.Key], s.cat.Prices[strings.TrimSuffix(e.Key, "-dry")]
 		if plain.Item == dry.Item || plain.Item == "" || dry.Own || plain.Own || dry.Currency != plain.Currency {

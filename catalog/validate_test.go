@@ -51,6 +51,9 @@ func TestProblemsAreFound(t *testing.T) {
 		want                      string // after "file:line: "
 	}{
 		{"key mistyped", toluene, "boiling point:", "boilling point:", 0, `unknown key "boilling point"; did you mean "boiling point" or "melting point"?`},
+		{"larger pack dearer", "prices.yaml", "{size: 125 kg, price: 4 USD/kg", "{size: 125 kg, price: 14 USD/kg, band: 2.5 to 17 USD/kg}, {size: 150 kg, price: 4 USD/kg", 0, `items.sieve-3a.packs: "sieve-3a": a pack of 25 at 10 and one of 125 at 14; larger packs come later and cost less per kg`},
+		{"pack without the price", "prices.yaml", "{size: 100 g, price: 600 USD/kg, band: 350 to 1000 USD/kg}, {size: 1 kg}", "{size: 100 g, price: 600 USD/kg, band: 350 to 1000 USD/kg}", 0, `items.calcium-hydride.packs: "calcium-hydride": no pack has the price of the item, 300`},
+		{"pack in litres", "prices.yaml", "packs: [{size: 250 g}]", "packs: [{size: 250 mL}]", 0, `items.sodium.packs[0].size: "250 mL" is a volume, but a mass is wanted here; allowed: kg, g, mg, ug, t, lb`},
 		{"unit missing", toluene, "110.6 °C", "110.6", 0, `boiling point.value: "110.6" has no unit; write "110.6 °C"`},
 		{"unit of something else", toluene, "110.6 °C", "110.6 kPa", 0, `boiling point.value: "110.6 kPa" is a pressure, but a temperature is wanted here; allowed: °C, K, °F`},
 		{"outside the physical range", toluene, "92.141 g/mol", "92.141 kg/mol", 0, `molar mass.value: "92.141 kg/mol" is outside 10 to 500 g/mol`},

@@ -55,50 +55,92 @@ func byItem(prices []job.Price) map[string][]job.Price {
 }
 
 func defaultPrice(cat *catalog.Catalog, p catalog.Price, j *job.Job) (price Price, ok bool, err error) {
-	perUnit, err := decimal.NewFromString(p.Amount)
-	if err != nil || perUnit.IsNegative() {
-		return Price{}, false, fmt.Errorf("price of %s in the catalog is not an amount: %q", p.Item, p.Amount)
-	}
-	perUnit, note, ok := intoCurrency(perUnit, p, j)
+	into, note, ok := intoCurrency(p, j)
 	if !ok {
-		return Price{}, false, nil
+		return Price{}, false, checkAmount(p)
+	}
+	packs, err := defaultPacks(p, into, note)
+	if err != nil {
+		return Price{}, false, err
 	}
 	price = Price{
 		Item:       p.Item,
 		Label:      p.Label,
 		Unit:       p.Unit,
-		PerUnit:    perUnit,
-		Date:       p.Date,
 		Source:     p.Source,
 		SourceText: cat.Sources[p.Source].Reference,
 		Confidence: string(p.Confidence),
 		Indicative: true,
-		Flag:       Indicative,
-		Packs:      []Pack{{Price: perUnit, PerUnit: perUnit, Date: p.Date, Minimum: 1, LeadDays: -1, Flag: Indicative}},
-		Note:       note,
 	}
 	if p.Own { // as good as a price of the job
-		price.Own, price.Indicative, price.Flag = true, false, age(p.Date, "", ReferenceDate(cat, j))
-		price.Packs[0].Flag = price.Flag
+		price.Own, price.Indicative = true, false
 		price.SourceText = "own data: " + price.SourceText
+		for i := range packs {
+			packs[i].Flag = age(p.Date, "", ReferenceDate(cat, j))
+		}
 	}
-	return price, true, nil
+	price.Packs = packs
+	return price.from(chosenPack(packs, decimal.Zero)), true, nil
 }
 
-// intoCurrency brings a price of the catalog into the currency of the job.
-func intoCurrency(perUnit decimal.Decimal, p catalog.Price, j *job.Job) (decimal.Decimal, string, bool) {
+// defaultPacks are the sizes that the catalog knows for an item, or any amount.
+func defaultPacks(p catalog.Price, into decimal.Decimal, note string) ([]Pack, error) {
+	sizes := p.Packs
+	if len(sizes) == 0 {
+		sizes = []catalog.PackSize{{Size: "0", Amount: p.Amount, Low: p.Low, High: p.High}}
+	}
+	packs := make([]Pack, len(sizes))
+	for i, one := range sizes {
+		size, err := decimal.NewFromString(one.Size)
+		if err != nil || size.IsNegative() {
+			return nil, fmt.Errorf("a pack of %s in the catalog has no size: %q", p.Item, one.Size)
+		}
+		perUnit, err := decimal.NewFromString(one.Amount)
+		if err != nil || perUnit.IsNegative() {
+			return nil, fmt.Errorf("price of %s in the catalog is not an amount: %q", p.Item, one.Amount)
+		}
+		perUnit = perUnit.Mul(into)
+		packs[i] = Pack{Size: size, PerUnit: perUnit, Price: perUnit.Mul(size), Low: bound(one.Low, into), High: bound(one.High, into),
+			Date: p.Date, Minimum: 1, LeadDays: -1, Flag: Indicative, Note: note}
+		if packs[i].AnyAmount() {
+			packs[i].Price = perUnit
+		}
+	}
+	return packs, nil
+}
+
+func checkAmount(p catalog.Price) error {
+	if d, err := decimal.NewFromString(p.Amount); err != nil || d.IsNegative() {
+		return fmt.Errorf("price of %s in the catalog is not an amount: %q", p.Item, p.Amount)
+	}
+	return nil
+}
+
+// bound is an end of a band, zero where there is none.
+func bound(amount string, into decimal.Decimal) decimal.Decimal {
+	d, err := decimal.NewFromString(amount)
+	if err != nil {
+		return decimal.Zero
+	}
+	return d.Mul(into)
+}
+
+// intoCurrency is the factor that brings a price of the catalog into the currency
+// of the job.
+func intoCurrency(p catalog.Price, j *job.Job) (factor decimal.Decimal, note string, ok bool) {
+	one := decimal.NewFromInt(1)
 	if p.Currency == "" || p.Currency == j.Currency {
-		return perUnit, p.Note, true
+		return one, p.Note, true
 	}
 	for _, rate := range j.Rates {
 		if rate.From == p.Currency {
-			return perUnit.Mul(rate.PerUnit), join(p.Note, fmt.Sprintf("published in %s, at %s %s of %s", p.Currency, rate.PerUnit, j.Currency, rate.Date)), true
+			return rate.PerUnit, join(p.Note, fmt.Sprintf("published in %s, at %s %s of %s", p.Currency, rate.PerUnit, j.Currency, rate.Date)), true
 		}
 	}
 	if slices.Contains(job.Currencies, j.Currency) && slices.Contains(job.Currencies, p.Currency) {
-		return perUnit, join(p.Note, fmt.Sprintf("published in %s, used at par in %s", p.Currency, j.Currency)), true
+		return one, join(p.Note, fmt.Sprintf("published in %s, used at par in %s", p.Currency, j.Currency)), true
 	}
-	return perUnit, "", false
+	return one, "", false
 }
 
 func ownPrice(cat *catalog.Catalog, offers []job.Price, j *job.Job, reference string) Price {

@@ -89,14 +89,16 @@ func (b Book) SeveralPacks() bool {
 }
 
 // Justified returns the book with the prices that a year's need of each item, in
-// the unit of its price, justifies by PackRule. changed reports a difference.
+// the unit of its price, justifies by PackRule. Items that the map does not name
+// keep their price. changed reports a difference.
 func (b Book) Justified(perYear map[string]float64) (book Book, changed bool, err error) {
 	book = maps.Clone(b)
 	for item, p := range b {
-		if len(p.Packs) < 2 {
+		year, needed := perYear[item]
+		if len(p.Packs) < 2 || !needed {
 			continue
 		}
-		need, err := amount("a year's need of "+item, perYear[item])
+		need, err := amount("a year's need of "+item, year)
 		if err != nil {
 			return nil, false, err
 		}
@@ -109,7 +111,8 @@ func (b Book) Justified(perYear map[string]float64) (book Book, changed bool, er
 
 // from takes price, date and flag from a pack.
 func (p Price) from(pack Pack) Price {
-	p.PerUnit, p.Date, p.Flag, p.Note = pack.PerUnit, pack.Date, pack.Flag, ""
+	p.PerUnit, p.Low, p.High = pack.PerUnit, pack.Low, pack.High
+	p.Date, p.Flag, p.Note = pack.Date, pack.Flag, ""
 	if !pack.AnyAmount() {
 		p.Note = fmt.Sprintf("from a pack of %s", measured(pack.Size, p.Unit))
 		if pack.Minimum > 1 {

@@ -189,3 +189,27 @@ func TestMoneyIsNeverBinary(t *testing.T) {
 		}
 	}
 }
+
+// The catalog's sizes are offers like those of a job: indicative, with the band of
+// the size that a need justifies, in the currency of the job.
+func TestPacksOfTheCatalog(t *testing.T) {
+	cat := exampleCatalog()
+	sieve := cat.Prices["sieve-3a"]
+	sieve.Packs = []catalog.PackSize{{Size: "5", Amount: "32.50", Low: "20", High: "60"}, {Size: "25", Amount: "10", Low: "6", High: "18"}}
+	cat.Prices["sieve-3a"] = sieve
+	book, err := costs.NewBook(cat, &job.Job{Currency: "EUR", Rates: []job.Rate{{From: "USD", PerUnit: d("0.9"), Date: "2026-11-01"}}})
+	if err != nil {
+		t.Fatal(err)
+	}
+	if p := book["sieve-3a"]; !p.PerUnit.Equal(d("29.25")) || !p.Indicative || p.Flag != costs.Indicative || !p.Packs[1].Price.Equal(d("225")) ||
+		p.Note != "from a pack of 5 kg, one of 2 on offer; figure of 2024; published in USD, at 0.9 EUR of 2026-11-01" {
+		t.Errorf("%+v", p)
+	}
+	priced, _, err := book.Justified(map[string]float64{"sieve-3a": 12.5})
+	if p := priced["sieve-3a"]; err != nil || !p.PerUnit.Equal(d("9")) || !p.Low.Equal(d("5.4")) || !p.High.Equal(d("16.2")) {
+		t.Errorf("%+v, %v", p, err)
+	}
+	if again, changed, _ := priced.Justified(map[string]float64{"toluene": 1}); changed || !again["sieve-3a"].PerUnit.Equal(d("9")) {
+		t.Error("an item that is not needed changes its price")
+	}
+}

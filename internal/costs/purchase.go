@@ -125,6 +125,9 @@ func (p *purchaser) pick(one *Purchase, price Price, n Need) error {
 		one.Orders = []Order{{Pack: offers[0], Count: 1, Amount: rounded, Cost: rounded.Mul(offers[0].PerUnit), Each: 1}}
 		one.Total, one.Flag = one.Orders[0].Cost, offers[0].Flag
 		one.Why = "priced by the unit: no pack sizes are known" + left
+		if one.Unit == "each" {
+			one.Why = "bought by the piece; it serves all lots"
+		}
 	} else if err := p.cover(one, offers, perDay, left); err != nil {
 		return err
 	}

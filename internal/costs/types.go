@@ -21,9 +21,10 @@ type Price struct {
 	Item, Label string
 	Unit        string // hour, kwh, m3, kg, litre, each, test
 	PerUnit     decimal.Decimal
-	Own         bool   // from the job or from the user's own catalog
-	Date        string // ISO date
-	Source      string // id of a catalog source, or "job"
+	Low, High   decimal.Decimal // the band of PerUnit; zero where none is given
+	Own         bool            // from the job or from the user's own catalog
+	Date        string          // ISO date
+	Source      string          // id of a catalog source, or "job"
 	SourceText  string
 	Confidence  string
 	Indicative  bool   // a default of the catalog: check before use
@@ -50,13 +51,14 @@ type Pack struct {
 	Size       decimal.Decimal // in the unit of the price; 0 stands for any amount
 	Price      decimal.Decimal // of one pack; of one unit where Size is 0
 	PerUnit    decimal.Decimal
-	Date       string // ISO date, "" where not given
-	ValidUntil string // ISO date, "" where not given
-	Minimum    int    // packs to order at least
-	LeadDays   int    // from order to delivery; -1 where not given
-	ShelfDays  int    // after opening; 0 where it keeps or is not given
-	Supplier   string // the user's own text
-	Tax        string // the tax basis in the user's words
+	Low, High  decimal.Decimal // the band of PerUnit; zero where none is given
+	Date       string          // ISO date, "" where not given
+	ValidUntil string          // ISO date, "" where not given
+	Minimum    int             // packs to order at least
+	LeadDays   int             // from order to delivery; -1 where not given
+	ShelfDays  int             // after opening; 0 where it keeps or is not given
+	Supplier   string          // the user's own text
+	Tax        string          // the tax basis in the user's words
 	Flag       Flag
 	Note       string // how it came into the currency of the report
 }

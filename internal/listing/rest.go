@@ -121,9 +121,21 @@ func price(key string, p catalog.Price) Entry {
 	one := fact("price", p.Amount, p.Currency+"/"+p.Unit, p.Origin)
 	one.Low, one.High = p.Low, p.High
 	f := facts{one}
+	for _, pack := range p.Packs {
+		size := fact("in packs of "+pack.Size+" "+packUnit(p.Unit), pack.Amount, p.Currency+"/"+p.Unit, p.Origin)
+		size.Low, size.High = pack.Low, pack.High
+		f = append(f, size)
+	}
 	f.say("kept under", p.Date, p.Origin)
 	f.value("water at most", p.WaterMax)
 	return Entry{Key: key, Title: fmt.Sprintf("%s: %s %s/%s", p.Label, p.Amount, p.Currency, p.Unit), Facts: f}
+}
+
+func packUnit(unit string) string {
+	if unit == "litre" {
+		return "L"
+	}
+	return unit
 }
 
 func source(key string, s catalog.Source) Entry {

@@ -62,6 +62,10 @@ const mostRounds = 4
 // compareLots compares all lots, and again with the prices of the packs that their
 // needs justify, until these stay the same.
 func (r *Report) compareLots(ctx context.Context, c *catalog.Catalog, o Options) error {
+	var err error
+	if r.Book, _, err = r.Book.Justified(costs.LikelyNeed(c, r.Job)); err != nil {
+		return err
+	}
 	for round := 1; ; round++ {
 		r.Lots = make([]Lot, len(r.Job.Lots))
 		group, ctx := errgroup.WithContext(ctx)
