@@ -109,10 +109,57 @@ func (b Book) Justified(perYear map[string]float64) (book Book, changed bool, er
 	return book, changed, nil
 }
 
+// PacksOf names the packs that set the prices of some items, where there is a
+// choice.
+func (b Book) PacksOf(items []string) map[string]string {
+	var packs map[string]string
+	for _, item := range items {
+		if pack := b[item].Pack; pack != "" {
+			if packs == nil {
+				packs = map[string]string{}
+			}
+			packs[item] = pack
+		}
+	}
+	return packs
+}
+
+// Pinned returns the book with the prices of the packs named, by item, and the
+// items for which there is no such pack any more.
+func (b Book) Pinned(packs map[string]string) (book Book, gone []string) {
+	book = maps.Clone(b)
+	for item, name := range packs {
+		price := b[item]
+		at := slices.IndexFunc(price.Packs, func(p Pack) bool { return p.name(price.Unit) == name })
+		if at < 0 {
+			gone = append(gone, item)
+			continue
+		}
+		book[item] = price.from(price.Packs[at])
+	}
+	slices.Sort(gone)
+	return book, gone
+}
+
+// name tells a pack from the others of its item.
+func (p Pack) name(unit string) string {
+	name := measured(p.Size, unit)
+	if p.Minimum > 1 {
+		name += fmt.Sprintf(", %d at least", p.Minimum)
+	}
+	if p.Supplier != "" {
+		name += ", " + p.Supplier
+	}
+	return name
+}
+
 // from takes price, date and flag from a pack.
 func (p Price) from(pack Pack) Price {
 	p.PerUnit, p.Low, p.High = pack.PerUnit, pack.Low, pack.High
-	p.Date, p.Flag, p.Note = pack.Date, pack.Flag, ""
+	p.Date, p.Flag, p.Note, p.Pack = pack.Date, pack.Flag, "", ""
+	if len(p.Packs) > 1 {
+		p.Pack = pack.name(p.Unit)
+	}
 	if !pack.AnyAmount() {
 		p.Note = fmt.Sprintf("from a pack of %s", measured(pack.Size, p.Unit))
 		if pack.Minimum > 1 {

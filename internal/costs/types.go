@@ -30,6 +30,7 @@ type Price struct {
 	Indicative  bool   // a default of the catalog: check before use
 	Flag        Flag   // why a total that rests on it is in doubt
 	Packs       []Pack // what is on offer, the smallest order first; PerUnit is that of one of them
+	Pack        string // which of them, such as "5 kg"; "" where there is no choice
 	Note        string
 }
 

@@ -93,6 +93,10 @@ type Settings struct {
 	Sieve           []string  `json:"sieve,omitempty"`      // "regenerate" or "discard", one for each soak or column
 	Receiver        []string  `json:"receiver,omitempty"`   // of each trap: key of the apparatus
 	ReceiverC       []float64 `json:"receiver_c,omitempty"` // of each trap: temperature, °C
+
+	// Packs that set the prices of the route, by item, where there are several:
+	// chosen by the need of all lots, not tuned for the route.
+	Packs map[string]string `json:"packs,omitempty"`
 }
 
 // ErrRefused means that the physics refuses a step of a route on this lot.

@@ -8,8 +8,6 @@ import (
 	"slices"
 	"sort"
 
-	"golang.org/x/sync/errgroup"
-
 	"parch/catalog"
 	"parch/internal/costs"
 	"parch/internal/job"
@@ -54,45 +52,6 @@ func Compare(ctx context.Context, j *job.Job, c *catalog.Catalog, o Options) (*R
 	r.Sources, r.Weak = provenance(r, c)
 	r.Weak = append(r.Weak, r.recalled()...)
 	return r, nil
-}
-
-// mostRounds bounds the rounds in which packs and routes settle.
-const mostRounds = 4
-
-// compareLots compares all lots, and again with the prices of the packs that their
-// needs justify, until these stay the same.
-func (r *Report) compareLots(ctx context.Context, c *catalog.Catalog, o Options) error {
-	var err error
-	if r.Book, _, err = r.Book.Justified(costs.LikelyNeed(c, r.Job)); err != nil {
-		return err
-	}
-	for round := 1; ; round++ {
-		r.Lots = make([]Lot, len(r.Job.Lots))
-		group, ctx := errgroup.WithContext(ctx)
-		group.SetLimit(8)
-		for i, lot := range r.Job.Lots {
-			group.Go(func() error {
-				l, err := compareLot(ctx, r.Job, lot, c, r.Book, o.Settings[lot.Name])
-				if err != nil {
-					return fmt.Errorf("lot %q: %w", lot.Name, err)
-				}
-				r.Lots[i] = l
-				return nil
-			})
-		}
-		if err := group.Wait(); err != nil {
-			return err
-		}
-		book, changed, err := r.Book.Justified(costs.MostOfEach(r.plans()))
-		if err != nil || !changed {
-			return err
-		}
-		if round == mostRounds {
-			r.Warnings = append(slices.Clone(r.Warnings), "the choice between packs did not settle: prices are those of the last but one round")
-			return nil
-		}
-		r.Book = book
-	}
 }
 
 func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog, book costs.Book, given map[string]routes.Settings) (Lot, error) {

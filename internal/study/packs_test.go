@@ -40,6 +40,31 @@ func TestPacksSettle(t *testing.T) {
 	}
 }
 
+// Settings name the packs that set the prices, so that a run with other numbers of
+// batches pays what the workbook pays whose batches were edited. A pack that is no
+// longer on offer is said to be gone.
+func TestPacksAreKeptWithTheSettings(t *testing.T) {
+	first := compare(t, packsJob, study.Options{})
+	given := map[string]map[string]routes.Settings{"a": {}}
+	for _, r := range first.Lots[0].Routes {
+		given["a"][r.ID] = r.Run.Settings
+	}
+	if got := given["a"]["soak:sieve-3a"].Packs["sieve-3a"]; got != "5 kg" {
+		t.Errorf("pack %q, want 5 kg", got)
+	}
+	fewer := strings.Replace(packsJob, "batches: 60 /yr", "batches: 2 /yr", 1)
+	if kept := compare(t, fewer, study.Options{Settings: given}).Book["sieve-3a"]; kept.PerUnit.String() != "45" || kept.Pack != "5 kg" {
+		t.Errorf("2 batches a year with the settings of 60: %s from %q", kept.PerUnit, kept.Pack)
+	}
+	if chosen := compare(t, fewer, study.Options{}).Book["sieve-3a"]; chosen.PerUnit.String() != "90" {
+		t.Errorf("2 batches a year: %s", chosen.PerUnit)
+	}
+	gone := compare(t, strings.Replace(packsJob, "pack: 5 kg", "pack: 6 kg", 1), study.Options{Settings: given})
+	if !strings.Contains(strings.Join(gone.Warnings, "\n"), "no such pack is on offer any more, another one sets the price: sieve-3a") {
+		t.Errorf("warnings %q", gone.Warnings)
+	}
+}
+
 // The list covers the best route's year: the sieve, the tests, the drum and the oven
 // that are not owned, and the solvent with what is lost of it, less what is on hand.
 // 20 kg on hand are 23 L, a week of 1080 L a year: with ten days of lead time the first

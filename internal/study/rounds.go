@@ -1,0 +1,101 @@
+package study
+
+import (
+	"context"
+	"fmt"
+	"maps"
+	"slices"
+	"strings"
+
+	"golang.org/x/sync/errgroup"
+
+	"parch/catalog"
+	"parch/internal/costs"
+)
+
+// mostRounds bounds the rounds in which packs and routes settle.
+const mostRounds = 4
+
+// compareLots compares all lots, and again with the prices of the packs that their
+// needs justify, until these stay the same. Packs of an earlier run's settings
+// stay as they are.
+func (r *Report) compareLots(ctx context.Context, c *catalog.Catalog, o Options) error {
+	pinned := r.pin(o)
+	free := func(need map[string]float64) map[string]float64 {
+		maps.DeleteFunc(need, func(item string, _ float64) bool { return pinned[item] != "" })
+		return need
+	}
+	book, _, err := r.Book.Justified(free(costs.LikelyNeed(c, r.Job)))
+	if err != nil {
+		return err
+	}
+	r.Book = book
+	for round := 1; ; round++ {
+		if err := r.compareOnce(ctx, c, o); err != nil {
+			return err
+		}
+		book, changed, err := r.Book.Justified(free(costs.MostOfEach(r.plans())))
+		if err != nil {
+			return err
+		}
+		if changed && round < mostRounds {
+			r.Book = book
+			continue
+		}
+		if changed {
+			r.Warnings = append(slices.Clone(r.Warnings), "the choice between packs did not settle: prices are those of the last but one round")
+		}
+		r.namePacks()
+		return nil
+	}
+}
+
+func (r *Report) compareOnce(ctx context.Context, c *catalog.Catalog, o Options) error {
+	r.Lots = make([]Lot, len(r.Job.Lots))
+	group, ctx := errgroup.WithContext(ctx)
+	group.SetLimit(8)
+	for i, lot := range r.Job.Lots {
+		group.Go(func() error {
+			l, err := compareLot(ctx, r.Job, lot, c, r.Book, o.Settings[lot.Name])
+			if err != nil {
+				return fmt.Errorf("lot %q: %w", lot.Name, err)
+			}
+			r.Lots[i] = l
+			return nil
+		})
+	}
+	return group.Wait()
+}
+
+// pin sets the prices to the packs that an earlier run's settings name.
+func (r *Report) pin(o Options) map[string]string {
+	packs := map[string]string{}
+	for _, lot := range slices.Sorted(maps.Keys(o.Settings)) {
+		for _, id := range slices.Sorted(maps.Keys(o.Settings[lot])) {
+			maps.Copy(packs, o.Settings[lot][id].Packs)
+		}
+	}
+	book, gone := r.Book.Pinned(packs)
+	r.Book = book
+	for _, item := range gone {
+		delete(packs, item)
+	}
+	if len(gone) > 0 {
+		r.Warnings = append(slices.Clone(r.Warnings), "no such pack is on offer any more, another one sets the price: "+strings.Join(gone, ", "))
+	}
+	return packs
+}
+
+// namePacks notes with each route the packs that its prices come from.
+func (r *Report) namePacks() {
+	for i := range r.Lots {
+		for j := range r.Lots[i].Routes {
+			run := &r.Lots[i].Routes[j].Run
+			items := make([]string, len(run.Uses))
+			for k, use := range run.Uses {
+				items[k] = use.Item
+			}
+			run.Settings.Packs = r.Book.PacksOf(items)
+		}
+	}
+}
