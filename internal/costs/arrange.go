@@ -1,9 +1,11 @@
 package costs
 
 import (
+	"cmp"
 	"fmt"
 	"math"
 	"slices"
+	"strings"
 
 	"parch/catalog"
 	"parch/internal/job"
@@ -15,7 +17,7 @@ import (
 const leastCharge = "waste-minimum"
 
 // Figures of a bench chiller, from memory: it draws 0.4 to 1.0 kWh for a kWh of
-// heat and serves about ten years.
+// heat; one that is priced by the job but not in the catalog serves about ten years.
 const (
 	chillerDraw  = 0.7
 	chillerYears = 10
@@ -36,6 +38,12 @@ type Arrangement struct {
 	shared      float64 // batches a year of all lots
 	priced      map[string]bool
 	pieces      map[string]piece
+	chillers    []chiller // the smallest first
+}
+
+type chiller struct {
+	key      string
+	coolingW float64
 }
 
 // piece is what a year of a piece of apparatus is worth, as shares of its price.
@@ -62,7 +70,13 @@ func NewArrangement(cat *catalog.Catalog, j *job.Job) *Arrangement {
 	}
 	for key, app := range cat.Apparatus {
 		a.pieces[key] = a.piece(app, slices.Contains(j.Equipment, job.Equipment{Item: key, Owned: true}))
+		if app.Kind == "chiller" && app.Cooling != nil {
+			a.chillers = append(a.chillers, chiller{key, app.Cooling.SI})
+		}
 	}
+	slices.SortFunc(a.chillers, func(x, y chiller) int {
+		return cmp.Or(cmp.Compare(x.coolingW, y.coolingW), strings.Compare(x.key, y.key))
+	})
 	return a
 }
 
@@ -98,7 +112,24 @@ func (a *Arrangement) Apply(run *routes.Run, batchesPerYear float64) {
 		}
 		uses = append(uses, use)
 	}
-	run.Uses = append(uses, a.collect(wasteKg, batchesPerYear)...)
+	run.Uses = append(onceEach(uses), a.collect(wasteKg, batchesPerYear)...)
+}
+
+// onceEach charges a piece of equipment that serves several steps of a route once.
+func onceEach(uses []routes.StageUse) []routes.StageUse {
+	most := map[string]int{} // place of the largest share of each piece
+	for i, use := range uses {
+		if first, seen := most[use.Item]; use.Head == steps.Equipment && (!seen || use.Quantity > uses[first].Quantity) {
+			most[use.Item] = i
+		}
+	}
+	kept := make([]routes.StageUse, 0, len(uses))
+	for i, use := range uses {
+		if use.Head != steps.Equipment || most[use.Item] == i {
+			kept = append(kept, use)
+		}
+	}
+	return kept
 }
 
 // cool replaces the cooling water of a stage where a chiller or a loop takes the
@@ -130,12 +161,55 @@ func (a *Arrangement) cool(run *routes.Run, water routes.StageUse) []routes.Stag
 	}
 	water.Use = steps.Use{Head: steps.CoolingWater, Item: "electricity", Unit: "kwh", Quantity: drawn,
 		Basis: fmt.Sprintf("chiller: %.2g kWh a kWh of heat (0.4 to 1.0, from memory); heat = heater energy x share that reaches the liquid", chillerDraw)}
-	uses := []routes.StageUse{water}
-	if a.priced["chiller"] {
-		uses = append(uses, routes.StageUse{Stage: water.Stage, Use: steps.Use{Head: steps.Equipment, Item: "chiller", Unit: "each", Quantity: a.chillerShare(), PerYear: true,
-			Basis: fmt.Sprintf("over %d years (from memory); a year's share over the batches of the lot", chillerYears)}})
+	return append([]routes.StageUse{water}, a.chillerWear(run, water.Stage, heatKWh)...)
+}
+
+// chillerWear is the share of the chiller that takes the duty of a stage: the one
+// that the job prices, or the smallest of the catalog that does; several of the
+// largest where none does.
+func (a *Arrangement) chillerWear(run *routes.Run, stage int, heatKWh float64) []routes.StageUse {
+	use := func(item string, share float64, basis string) []routes.StageUse {
+		if share == 0 {
+			return nil
+		}
+		return []routes.StageUse{{Stage: stage, Use: steps.Use{Head: steps.Equipment, Item: item, Unit: "each", Quantity: share, PerYear: true,
+			Basis: basis + "; a year's share over the batches of the lot"}}}
 	}
-	return uses
+	if a.priced["chiller"] {
+		return use("chiller", a.chillerShare(), fmt.Sprintf("over %d years (from memory)", chillerYears))
+	}
+	if len(a.chillers) == 0 {
+		return nil
+	}
+	dutyW := a.dutyW(run, stage, heatKWh)
+	chosen := a.chillers[len(a.chillers)-1]
+	for _, c := range a.chillers {
+		if c.coolingW >= dutyW {
+			chosen = c
+			break
+		}
+	}
+	count := math.Max(1, math.Ceil(dutyW/chosen.coolingW))
+	p := a.pieces[chosen.key]
+	basis := "owned"
+	if !p.owned {
+		basis = fmt.Sprintf("bought for a duty of %.3g W, over %.3g years", dutyW, p.years)
+	}
+	return use(chosen.key, count*(p.breakage+p.writeOff), basis)
+}
+
+// dutyW is the heat that a stage hands to its condenser while it boils, or its
+// mean where the step does not say.
+func (a *Arrangement) dutyW(run *routes.Run, stage int, heatKWh float64) float64 {
+	at := stage - 1
+	if at < 0 || at >= len(run.Outcomes) {
+		return 0
+	}
+	o := &run.Outcomes[at]
+	if o.Condenser.DutyW == 0 && o.HoursTotal > 0 {
+		return heatKWh * 1e3 / o.HoursTotal
+	}
+	return o.Condenser.DutyW
 }
 
 func (a *Arrangement) chillerShare() float64 {
