@@ -16,6 +16,7 @@ import (
 // Buying is what has to be bought for a year, all lots together. Its days count
 // from the day of the earliest order.
 type Buying struct {
+	FirstOrder    string // ISO date of day 0, that of the job; "" where it has none
 	FirstBatchDay int
 	Purchases     []Purchase // by item
 	Flags         []string   // storage limits that are passed
@@ -66,7 +67,7 @@ func Buy(cat *catalog.Catalog, j *job.Job, book Book, needs []Need, pieces map[s
 		needs = append(needs, Need{Item: item, Unit: "each", Process: float64(n), AtOnce: float64(n)})
 	}
 	slices.SortFunc(needs, func(a, b Need) int { return strings.Compare(a.Item, b.Item) })
-	var list Buying
+	list := Buying{FirstOrder: j.Date}
 	for _, n := range needs {
 		one, err := p.purchase(n)
 		if err != nil {

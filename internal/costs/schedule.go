@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 	"slices"
+	"time"
 
 	"parch/catalog"
 )
@@ -51,6 +52,16 @@ func dayWhen(covered, perDay float64) int {
 		return 0
 	}
 	return int(math.Min(math.Floor(covered/perDay), 10*daysPerYear))
+}
+
+// DateOf is the date of a day of the list where the earliest order is placed on the
+// date of the job; "" where the job has none.
+func (b *Buying) DateOf(day int) string {
+	first, err := time.Parse(time.DateOnly, b.FirstOrder)
+	if err != nil {
+		return ""
+	}
+	return first.AddDate(0, 0, day).Format(time.DateOnly)
 }
 
 // fromFirstOrder counts the days from the earliest order.

@@ -68,12 +68,16 @@ func (p *page) buying(r *study.Report) {
 		return
 	}
 	p.line("")
-	p.say(0, 0, "To buy for a year of the best routes, all lots together (the first batch is on day %d, counted from the earliest order):", r.Buying.FirstBatchDay)
+	first := fmt.Sprintf("the first batch is on day %d, counted from the earliest order", r.Buying.FirstBatchDay)
+	if date := r.Buying.DateOf(r.Buying.FirstBatchDay); date != "" {
+		first = fmt.Sprintf("the first order is placed on %s, the date of the job, the first batch is on %s", r.Buying.FirstOrder, date)
+	}
+	p.say(0, 0, "To buy for a year of the best routes, all lots together (%s):", first)
 	rows := make([][]string, len(r.Buying.Purchases))
 	for i := range r.Buying.Purchases {
-		rows[i] = purchaseRow(&r.Buying.Purchases[i])
+		rows[i] = purchaseRow(&r.Buying, &r.Buying.Purchases[i])
 	}
-	p.table([]column{{"Item", false, 24}, {"Need", true, 0}, {"On hand", true, 0}, {"Packs", false, 26}, {"Order\non day", true, 0}, {"Total\n" + r.Job.Currency, true, 0}}, rows)
+	p.table([]column{{"Item", false, 24}, {"Need", true, 0}, {"On hand", true, 0}, {"Packs", false, 26}, {"Order\non" + dayHeading(&r.Buying), true, 0}, {"Total\n" + r.Job.Currency, true, 0}}, rows)
 	for i := range r.Buying.Purchases {
 		one := &r.Buying.Purchases[i]
 		p.say(5, 4, "%s: %s", one.Item, purchaseText(one))
@@ -83,11 +87,27 @@ func (p *page) buying(r *study.Report) {
 	}
 }
 
-func purchaseRow(one *costs.Purchase) []string {
+// dayHeading and dayShown: a date where the job has one, else a day counted from
+// the earliest order.
+func dayHeading(b *costs.Buying) string {
+	if b.FirstOrder == "" {
+		return " day"
+	}
+	return ""
+}
+
+func dayShown(b *costs.Buying, day int) string {
+	if date := b.DateOf(day); date != "" {
+		return date
+	}
+	return strconv.Itoa(day)
+}
+
+func purchaseRow(b *costs.Buying, one *costs.Purchase) []string {
 	var packs, days []string
 	for _, o := range one.Orders {
 		packs = append(packs, orderText(one, o))
-		days = append(days, strconv.Itoa(o.OrderDay))
+		days = append(days, dayShown(b, o.OrderDay))
 	}
 	total := "no price"
 	switch {

@@ -199,7 +199,7 @@ func yearCells(l *study.Lot, y *costs.Year) []string {
 
 var buyingHeadings = []string{"item", "label", "specification", "un_number", "hazard_class", "packing_group", "transport_basis", "unit", "process_per_year", "losses_per_year",
 	"safety_stock", "on_hand", "to_buy", "kg_per_unit", "pack_size", "packs", "amount", "price_of_pack", "cost", "currency", "supplier", "tax", "price_date", "valid_until",
-	"price_check", "lead_time_days", "order_day", "needed_on_day", "first_batch_day", "packs_per_delivery", "days_between_deliveries", "left_at_end", "too_old_before_use",
+	"price_check", "lead_time_days", "order_day", "needed_on_day", "first_batch_day", "packs_per_delivery", "days_between_deliveries", "order_date", "needed_on_date", "left_at_end", "too_old_before_use",
 	"most_in_store", "storage_flags", "why"}
 
 // buyingRows has one row a pack, or one for an item of which nothing is bought.
@@ -209,7 +209,7 @@ func buyingRows(r *study.Report) [][]string {
 		p := &r.Buying.Purchases[i]
 		orders := p.Orders
 		if len(orders) == 0 {
-			rows = append(rows, slices.Concat(purchaseCells(p), make([]string, 17), endCells(r, p)))
+			rows = append(rows, slices.Concat(purchaseCells(p), make([]string, 19), endCells(r, p)))
 		}
 		for _, o := range orders {
 			rows = append(rows, slices.Concat(purchaseCells(p), orderCells(r, o), endCells(r, p)))
@@ -238,7 +238,8 @@ func orderCells(r *study.Report, o costs.Order) []string {
 		every = strconv.Itoa(o.Every)
 	}
 	return []string{size, strconv.Itoa(o.Count), o.Amount.String(), o.Pack.Price.String(), o.Cost.String(), r.Job.Currency, o.Pack.Supplier, o.Pack.Tax, o.Pack.Date, o.Pack.ValidUntil,
-		string(o.Pack.Flag), lead, strconv.Itoa(o.OrderDay), strconv.Itoa(o.NeedDay), strconv.Itoa(r.Buying.FirstBatchDay), strconv.Itoa(o.Each), every}
+		string(o.Pack.Flag), lead, strconv.Itoa(o.OrderDay), strconv.Itoa(o.NeedDay), strconv.Itoa(r.Buying.FirstBatchDay), strconv.Itoa(o.Each), every,
+		r.Buying.DateOf(o.OrderDay), r.Buying.DateOf(o.NeedDay)}
 }
 
 func endCells(r *study.Report, p *costs.Purchase) []string {

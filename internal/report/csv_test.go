@@ -52,7 +52,7 @@ func TestTableHeadings(t *testing.T) {
 		"bills.csv": "route_id rank step head item quantity_per_batch unit unit_price amount_per_batch currency quantity_per_year_shared price_date price_check lot label basis",
 		"buying.csv": "item label specification un_number hazard_class packing_group transport_basis unit process_per_year losses_per_year safety_stock on_hand to_buy kg_per_unit " +
 			"pack_size packs amount price_of_pack cost currency supplier tax price_date valid_until price_check lead_time_days order_day needed_on_day first_batch_day " +
-			"packs_per_delivery days_between_deliveries left_at_end too_old_before_use most_in_store storage_flags why",
+			"packs_per_delivery days_between_deliveries order_date needed_on_date left_at_end too_old_before_use most_in_store storage_flags why",
 		"routes.csv": "lot solvent route_id label rank meets_target water_out_mg_per_kg hours_total hours_attended energy_kwh cooling_water_l solvent_lost_l litres_delivered currency " +
 			"cost_per_batch cost_per_litre cost_per_year cost_labour cost_energy cost_cooling_water cost_agent cost_solvent_lost cost_waste cost_equipment cost_testing cost_purchase " +
 			"no_price_for price_check co2e_kg co2e_energy_kg co2e_making_kg co2e_burning_kg co2e_agent_kg co2e_sources waste_kg waste_aqueous_kg waste_flammable_liquid_kg " +

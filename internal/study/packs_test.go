@@ -90,6 +90,9 @@ func TestBuyingCoversTheYear(t *testing.T) {
 			t.Errorf("toluene: %+v, lost %g, first batch on day %d", p, lost, r.Buying.FirstBatchDay)
 		}
 	}
+	if b := r.Buying; b.DateOf(0) != "2026-12-01" || b.DateOf(b.FirstBatchDay) != "2026-12-04" {
+		t.Errorf("first order %s, first batch %s; want the date of the job and three days later", b.DateOf(0), b.DateOf(b.FirstBatchDay))
+	}
 	if len(r.Buying.Purchases) != 5 {
 		t.Errorf("%d items", len(r.Buying.Purchases))
 	}

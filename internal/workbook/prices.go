@@ -68,10 +68,14 @@ func ownOrDefault(p costs.Price) string {
 // priceMark says what must be known before the price is relied upon.
 func priceMark(p costs.Price) string {
 	switch {
+	case p.Confidence == string(catalog.Invented) && p.Flag != costs.NoFlag:
+		return "invented, " + string(p.Flag) + ": not a market price"
 	case p.Confidence == string(catalog.Invented):
 		return "invented: not a market price"
 	case p.Indicative:
 		return "indicative: check before use"
+	case p.Flag != costs.NoFlag:
+		return string(p.Flag) + ": check before use"
 	}
 	return ""
 }

@@ -3,6 +3,8 @@ package workbook
 import (
 	"slices"
 	"strings"
+
+	"parch/internal/costs"
 )
 
 // remark is a text that holds for some routes of some lots.
@@ -117,6 +119,16 @@ func (l *layout) cautionBlock(g *grid) {
 	}
 }
 
+// priceDoubts says what kinds of prices to check a route's total rests on.
+func (l *layout) priceDoubts(r *routeModel) (texts []string) {
+	for _, flag := range []costs.Flag{costs.Expired, costs.Old, costs.Undated, costs.Indicative} {
+		if slices.ContainsFunc(r.lines, func(line lineModel) bool { return l.report.Book[line.Item].Flag == flag }) {
+			texts = append(texts, "the total rests on prices that are "+string(flag)+"; Prices marks which")
+		}
+	}
+	return texts
+}
+
 // noteBlock says what must be known of a lot or a route besides its numbers.
 func (l *layout) noteBlock(g *grid) {
 	var rs remarks
@@ -126,7 +138,7 @@ func (l *layout) noteBlock(g *grid) {
 		}
 	}
 	for _, r := range l.routes {
-		for _, s := range slices.Concat(r.Route.Warnings, r.Run.Warnings) {
+		for _, s := range slices.Concat(r.Route.Warnings, r.Run.Warnings, l.priceDoubts(r)) {
 			rs.add("route", s, r.lot.no, r.ID)
 		}
 	}
