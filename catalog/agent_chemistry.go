@@ -143,7 +143,7 @@ func (s *shelf) gas(n *document.Node) Value {
 
 func (s *shelf) residual(n *document.Node) Residual {
 	f := n.Map(with("solvent", "water", "band", "time", "how")...)
-	r := Residual{Solvent: knownWord(f.Need("solvent"), keysOf(s.cat.Solvents)), How: f.Need("how").Text()}
+	r := Residual{Solvent: keyOf(f.Need("solvent"), s.cat.Solvents), How: f.Need("how").Text()}
 	r.Water = Value{Text: f.Need("water").Text(), Origin: s.origin(f)}
 	if reading, ok := f.Get("water").Quantity(quantity.WaterContent); ok {
 		r.Water.SI = reading.SI

@@ -22,8 +22,8 @@ func (s *shelf) readCaution(n *document.Node, classes, seen map[string]bool) {
 	f := n.Map(with("code", "level", "text", "steps", "agents", "classes", "solvents", "peroxide", "flammable", "reclaimed")...)
 	c := Caution{
 		Code: f.Need("code").Text(), Level: f.Need("level").OneOf("info", "caution", "danger"), Text: f.Need("text").Text(),
-		Steps: known(f.Get("steps"), stepKinds), Agents: known(f.Get("agents"), keysOf(s.cat.Agents)),
-		Classes: known(f.Get("classes"), keysOf(classes)), Solvents: known(f.Get("solvents"), keysOf(s.cat.Solvents)),
+		Steps: known(f.Get("steps"), stepKinds), Agents: keysIn(f.Get("agents"), s.cat.Agents),
+		Classes: keysIn(f.Get("classes"), classes), Solvents: keysIn(f.Get("solvents"), s.cat.Solvents),
 		Peroxide: f.Get("peroxide").Bool(), Flammable: f.Get("flammable").Bool(), Reclaimed: f.Get("reclaimed").Bool(),
 		Origin: s.origin(f),
 	}

@@ -64,3 +64,24 @@ func knownWord(n *document.Node, allowed []string) string {
 	}
 	return word
 }
+
+// keysIn reads a list of keys of a map.
+func keysIn[V any](n *document.Node, m map[string]V) []string {
+	if n == nil {
+		return nil
+	}
+	var keys []string
+	for _, item := range n.Items() {
+		keys = append(keys, keyOf(item, m))
+	}
+	return keys
+}
+
+// keyOf reads a key of a map.
+func keyOf[V any](n *document.Node, m map[string]V) string {
+	key := n.Text()
+	if _, ok := m[key]; !ok && key != "" {
+		return knownWord(n, keysOf(m))
+	}
+	return key
+}

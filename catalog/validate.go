@@ -196,12 +196,13 @@ func (s *shelf) checkAliases() {
 // A gap is reported where it can be closed: at an own solvent or own agent, or in
 // the matrix.
 func (s *shelf) checkPairs() {
+	agents := keysOf(s.cat.Agents)
 	for _, key := range keysOf(s.cat.Solvents) {
 		v := s.cat.Solvents[key]
 		if key == waterKey {
 			continue
 		}
-		for _, agent := range keysOf(s.cat.Agents) {
+		for _, agent := range agents {
 			if _, ok := s.cat.Verdict(v, agent); ok {
 				continue
 			}

@@ -8,12 +8,12 @@ const leastGap = 3
 // convex hull of the Gibbs energy of mixing that skip points. The hull sees stable
 // gaps only, not the spinodals of a metastable island inside one.
 func (m *NRTL) CountGaps(tK float64) int {
-	count, last := 0, -1
-	for _, i := range m.hull(tK) {
-		if last >= 0 && i-last > leastGap {
+	hull, n := m.hull(tK)
+	count := 0
+	for k := 1; k < n; k++ {
+		if hull[k]-hull[k-1] > leastGap {
 			count++
 		}
-		last = i
 	}
 	return count
 }

@@ -24,20 +24,20 @@ func (m *Mixture) SplitAt(tK float64) (Split, error) {
 }
 
 // hullPoints spaces mole fractions evenly in ln(x/(1-x)), from 1e-9 to 1 - 1e-9.
-var hullPoints = func() []float64 {
-	const n, edge = 401, 20.723 // ln(1e9)
-	xs := make([]float64, n)
+var hullPoints = func() (xs [hullSize]float64) {
+	const edge = 20.723 // ln(1e9)
 	for i := range xs {
-		u := -edge + 2*edge*float64(i)/(n-1)
+		u := -edge + 2*edge*float64(i)/(hullSize-1)
 		xs[i] = 1 / (1 + math.Exp(-u))
 	}
 	return xs
 }()
 
+const hullSize = 401
+
 // hullIdeal is the Gibbs energy of ideal mixing over RT at the hullPoints.
-var hullIdeal = func() []float64 {
-	g := make([]float64, len(hullPoints))
-	for i, x := range hullPoints {
+var hullIdeal = func() (g [hullSize]float64) {
+	for i, x := range &hullPoints {
 		g[i] = x*math.Log(x) + (1-x)*math.Log1p(-x)
 	}
 	return g
@@ -45,10 +45,9 @@ var hullIdeal = func() []float64 {
 
 // gibbs is the Gibbs energy of mixing over RT, per mole, at the hullPoints: the
 // excess is x1 x2 (tau21 G21/(x1 + x2 G21) + tau12 G12/(x2 + x1 G12)).
-func (m *NRTL) gibbs(tK float64) []float64 {
+func (m *NRTL) gibbs(tK float64) (all [hullSize]float64) {
 	tau, g := m.factors(tK)
-	all := make([]float64, len(hullPoints))
-	for i, x := range hullPoints {
+	for i, x := range &hullPoints {
 		y := 1 - x
 		all[i] = hullIdeal[i] + x*y*(tau[1][0]*g[1][0]/(x+y*g[1][0])+tau[0][1]*g[0][1]/(y+x*g[0][1]))
 	}
@@ -58,9 +57,9 @@ func (m *NRTL) gibbs(tK float64) []float64 {
 // hullGap returns the ends of the widest edge of the lower convex hull that
 // skips at least one point.
 func (m *Mixture) hullGap(tK float64) (left, right float64, found bool) {
-	hull := m.NRTL.hull(tK)
+	hull, n := m.NRTL.hull(tK)
 	widest := 1
-	for k := 1; k < len(hull); k++ {
+	for k := 1; k < n; k++ {
 		if skipped := hull[k] - hull[k-1]; skipped > widest {
 			widest, left, right, found = skipped, hullPoints[hull[k-1]], hullPoints[hull[k]], true
 		}
@@ -68,21 +67,21 @@ func (m *Mixture) hullGap(tK float64) (left, right float64, found bool) {
 	return left, right, found
 }
 
-// hull returns the points of the grid that lie on the lower convex hull of the
+// hull returns the n points of the grid that lie on the lower convex hull of the
 // Gibbs energy of mixing.
-func (m *NRTL) hull(tK float64) []int {
-	n, g := len(hullPoints), m.gibbs(tK)
-	hull := make([]int, 0, n)
-	for i := range n {
-		for len(hull) >= 2 && aboveChord(g, hull[len(hull)-2], hull[len(hull)-1], i) {
-			hull = hull[:len(hull)-1]
+func (m *NRTL) hull(tK float64) (points [hullSize]int, n int) {
+	g := m.gibbs(tK)
+	for i := range hullSize {
+		for n >= 2 && aboveChord(&g, points[n-2], points[n-1], i) {
+			n--
 		}
-		hull = append(hull, i)
+		points[n] = i
+		n++
 	}
-	return hull
+	return points, n
 }
 
-func aboveChord(g []float64, a, b, c int) bool {
+func aboveChord(g *[hullSize]float64, a, b, c int) bool {
 	xa, xb, xc := hullPoints[a], hullPoints[b], hullPoints[c]
 	return (g[b]-g[a])*(xc-xa) >= (g[c]-g[a])*(xb-xa)
 }
