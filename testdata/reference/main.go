@@ -35,7 +35,7 @@ func run() error {
 		return err
 	}
 	var all []problem
-	for _, solve := range []func(*catalog.Catalog) (problem, error){trap, soak} {
+	for _, solve := range []func(*catalog.Catalog) (problem, error){trap, soak, book} {
 		p, err := solve(cat)
 		if err != nil {
 			return err
