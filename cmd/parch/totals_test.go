@@ -22,15 +22,25 @@ import (
 // The lines of bills.csv, added up by awk, are the costs of the JSON and, to the
 // cent, those on the sheet Compare, read without the program's own libraries.
 func TestTotalsAgreeEverywhere(t *testing.T) {
+	jobs, err := filepath.Glob("../../testdata/jobs/*.yaml")
+	if err != nil || len(jobs) < 3 {
+		t.Fatalf("%d jobs, %v", len(jobs), err)
+	}
+	for _, what := range append(jobs, "--demo") {
+		t.Run(filepath.Base(what), func(t *testing.T) { totalsAgree(t, what) })
+	}
+}
+
+func totalsAgree(t *testing.T, what string) {
 	awk := outside.Program(t, "awk")
 	dir := t.TempDir()
 	path := func(name string) string { return filepath.Join(dir, name) }
 	var stdout, stderr bytes.Buffer
-	args := []string{"compare", "--demo", "--quiet", "--workbook", path("a.xlsx"), "--json", path("a.json"), "--csv", path("tables")}
+	args := []string{"compare", what, "--quiet", "--workbook", path("a.xlsx"), "--json", path("a.json"), "--csv", path("tables")}
 	if status := cli.Run(t.Context(), args, strings.NewReader(""), &stdout, &stderr); status != 0 {
 		t.Fatalf("status %d: %s", status, stderr.String())
 	}
-	// The lot of the demonstration stands in column 14; none of its columns before holds a comma.
+	// The lot stands in column 14; none of the columns before holds a comma.
 	out, err := exec.CommandContext(t.Context(), awk, "-F,", `NR > 1 { sum[$14 "|" $1] += $9 } END { for (key in sum) printf "%s|%.10f\n", key, sum[key] }`, path("tables/bills.csv")).Output()
 	if err != nil {
 		t.Fatal(err)
