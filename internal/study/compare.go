@@ -48,6 +48,7 @@ func Compare(ctx context.Context, j *job.Job, c *catalog.Catalog, o Options) (*R
 			return nil, err
 		}
 	}
+	r.prices = r.Book
 	r.Book = usedPrices(r)
 	r.Sources, r.Weak = provenance(r, c)
 	r.Weak = append(r.Weak, r.recalled()...)

@@ -23,6 +23,8 @@ type Report struct {
 	Weak        []Weak           // numbers that rest on memory, practice or assumption
 	Bookings    []Booking        // of apparatus by the best routes of all lots together
 	Warnings    []string
+
+	prices costs.Book // all of them
 }
 
 // Weak is a number that rests on memory, common practice or an assumption, or that

@@ -1,0 +1,151 @@
+package study
+
+import (
+	"context"
+	"encoding/json"
+	"math"
+	"os"
+	"runtime"
+	"strings"
+	"testing"
+
+	"parch/catalog"
+	"parch/internal/job"
+	"parch/internal/routes"
+	"parch/internal/search"
+)
+
+func worked(t *testing.T, name string) (*Report, *catalog.Catalog) {
+	t.Helper()
+	c, err := catalog.Load()
+	if err != nil {
+		t.Fatal(err)
+	}
+	data, err := os.ReadFile("../../testdata/jobs/" + name + ".yaml")
+	if err != nil {
+		t.Fatal(err)
+	}
+	j, err := job.Read(name, data, c)
+	if err != nil {
+		t.Fatal(err)
+	}
+	r, err := Compare(context.Background(), j, c, Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	return r, c
+}
+
+var workedJobs = []string{"saturated-toluene", "reclaimed-ethyl-acetate", "acetonitrile"}
+
+// at is the job with one figure changed: what each break-even was asked of, put
+// together anew.
+func (q *question) at(t *testing.T, b *BreakEven, x float64) *search.Tuner {
+	switch b.Key {
+	case StartWater:
+		return q.withLot(func(l *job.Lot) { l.Water, l.Saturated = x*1e-6, false })
+	case Volume:
+		return q.withLot(func(l *job.Lot) { l.BatchesPerYear = x * 12 / (l.BatchM3 * 1e3) })
+	case Technician:
+		return q.priced(x/b.Now, "technician")
+	case SievePrice:
+		return q.priced(x/b.Now, q.sieves()...)
+	}
+	t.Fatalf("no figure %s", b.Key)
+	return nil
+}
+
+// Where the order of two routes changes their costs differ by less than 0.01 %, and
+// on either side the one is cheaper that is said to be. The routes are tuned anew,
+// without what the search knew.
+func TestOrderChangesAtTheBreakEven(t *testing.T) {
+	checked := 0
+	for _, name := range workedJobs {
+		r, c := worked(t, name)
+		full := *r
+		full.Book = r.prices
+		q, err := newQuestion(&full, &r.Lots[0], c)
+		if err != nil {
+			t.Fatal(err)
+		}
+		q.warm = nil
+		for i := range r.Lots[0].BreakEvens {
+			b := &r.Lots[0].BreakEvens[i]
+			if b.Never || b.Step || b.Key == Receiver || b.Key == SieveUses {
+				continue
+			}
+			checked++
+			cost := func(x float64, id string) float64 {
+				f := q.field(q.at(t, b, x), func(r routes.Route) bool { return r.ID() == id })
+				won, _, err := f.Cheapest(nil, math.Inf(1))
+				if err != nil || won.Route == nil {
+					t.Fatalf("%s, %s: %s at %g: %v", name, b.Key, id, x, err)
+				}
+				return won.Cost
+			}
+			if below, above := cost(b.At, b.Below), cost(b.At, b.Above); math.Abs(below-above) > 1e-4*above {
+				t.Errorf("%s, %s at %.8g: %s costs %.8g, %s %.8g", name, b.Key, b.At, b.Below, below, b.Above, above)
+			}
+			for _, side := range []float64{0.99, 1.01} {
+				below, above := cost(b.At*side, b.Below), cost(b.At*side, b.Above)
+				if (below < above) != (side < 1) {
+					t.Errorf("%s, %s at %.8g: %s costs %.8g, %s %.8g: the order does not flip", name, b.Key, b.At*side, b.Below, below, b.Above, above)
+				}
+			}
+		}
+	}
+	if checked < 3 {
+		t.Errorf("%d break-evens in the worked jobs: too few to tell", checked)
+	}
+}
+
+// What the worked jobs are there to show: pre-drying pays for the wet ester whose
+// sieve is used once, and not for acetonitrile.
+func TestWorkedJobs(t *testing.T) {
+	for name, preDried := range map[string]bool{"reclaimed-ethyl-acetate": true, "acetonitrile": false} {
+		r, _ := worked(t, name)
+		best := r.Lots[0].Best()
+		if best == nil || strings.Contains(best.ID, "+") != preDried {
+			t.Errorf("%s: best is %+v, pre-dried %t wanted", name, best, preDried)
+		}
+	}
+	r, _ := worked(t, "saturated-toluene")
+	if best := r.Lots[0].Best(); best == nil || !strings.HasPrefix(best.ID, "settle+soak:") {
+		t.Errorf("free water is not drawn off first: %+v", best)
+	}
+}
+
+// The same job gives the same answer on one core and on several.
+func TestSameAnswerOnAnyNumberOfCores(t *testing.T) {
+	before := runtime.GOMAXPROCS(1)
+	defer runtime.GOMAXPROCS(before)
+	answer := func(cores int) string {
+		runtime.GOMAXPROCS(cores)
+		r, _ := worked(t, "reclaimed-ethyl-acetate")
+		l := r.Lots[0]
+		for i := range l.BreakEvens {
+			if b := &l.BreakEvens[i]; math.IsNaN(b.At) {
+				b.At = -1
+			}
+		}
+		for _, row := range l.WhatIf.Cells {
+			for i := range row {
+				if math.IsNaN(row[i].CostPerLitre) {
+					row[i].CostPerLitre = -1
+				}
+			}
+		}
+		var settings []any
+		for _, route := range l.Routes {
+			settings = append(settings, route.ID, route.Rank, route.Bill.PerBatch, route.Run.Settings)
+		}
+		text, err := json.Marshal([]any{settings, l.BreakEvens, l.WhatIf, l.Front})
+		if err != nil {
+			t.Fatal(err)
+		}
+		return string(text)
+	}
+	if one, four := answer(1), answer(4); one != four {
+		t.Errorf("on one core\n%s\non four\n%s", one, four)
+	}
+}
