@@ -22,7 +22,8 @@ const (
 // The settings found are held against every combination of the axes at each of many
 // hand-overs spaced evenly in the logarithm: the same feasible set, without any
 // search. The search may be worse by half a per cent at most; it may be better by no
-// more than the grid changes from its best point to the points next to it.
+// more than the grid changes from its best point to the next, or between the two
+// points that the hand-over found lies between.
 func TestTunedAgainstADenseGrid(t *testing.T) {
 	jobs, points := fewJobs, fewPoints
 	if n, err := strconv.Atoi(os.Getenv("PARCH_OPTIMALITY")); err == nil {
@@ -40,7 +41,7 @@ func TestTunedAgainstADenseGrid(t *testing.T) {
 		if err != nil {
 			t.Fatal(err)
 		}
-		grid, step := denseGrid(t, tuner, route, points)
+		grid, step := denseGrid(t, tuner, route, points, tuned.Settings)
 		if math.IsInf(grid, 1) || grid == 0 && got == 0 {
 			continue
 		}
@@ -58,7 +59,7 @@ func TestTunedAgainstADenseGrid(t *testing.T) {
 
 // denseGrid is the lowest value over all combinations, and how much the value
 // changes from there to the nearest points on either side. One hand-over only.
-func denseGrid(t *testing.T, tuner *Tuner, route routes.Route, points int) (lowest, step float64) {
+func denseGrid(t *testing.T, tuner *Tuner, route routes.Route, points int, found routes.Settings) (lowest, step float64) {
 	t.Helper()
 	g, err := tuner.prepare(route)
 	if err != nil || len(g.places) > 1 {
@@ -105,5 +106,19 @@ func denseGrid(t *testing.T, tuner *Tuner, route routes.Route, points int) (lowe
 	if g.failed != nil {
 		t.Fatal(g.failed)
 	}
-	return lowest, step
+	return lowest, math.Max(step, g.between(found, points))
+}
+
+// between is how much the value changes over the step of the grid in which the
+// settings found lie.
+func (g *tuning) between(found routes.Settings, points int) float64 {
+	if len(g.places) == 0 {
+		return 0
+	}
+	at := g.nearest(found)
+	width := (g.hi[0] - g.lo[0]) / float64(points-1)
+	i := math.Min(math.Floor((at.u[0]-g.lo[0])/width), float64(points-2))
+	below, above := at.clone(), at.clone()
+	below.u[0], above.u[0] = g.lo[0]+i*width, g.lo[0]+(i+1)*width
+	return math.Abs(g.try(below) - g.try(above))
 }
