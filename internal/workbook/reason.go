@@ -148,7 +148,7 @@ func turns(lot *lotModel) string {
 	var parts []string
 	for _, b := range lot.BreakEvens {
 		if b.Answer != "" && !b.Never && len(parts) < mostTurns {
-			parts = append(parts, sentence(b.Answer))
+			parts = append(parts, sentence(capital(oneLine(b.What))+": "+b.Answer))
 		}
 	}
 	if len(lot.BreakEvens) > 0 && len(parts) == 0 {

@@ -207,7 +207,7 @@ func round2(x float64) float64 {
 }
 
 const (
-	volumeHeight = 380 // pixels
+	volumeHeight = 520 // pixels
 	chartBeside  = 10  // column of a chart beside its table
 	besideWidth  = 500
 )
