@@ -36,7 +36,7 @@ const (
 )
 
 func (l *layout) benchCard() *grid {
-	widths := []float64{14, 66, 9, 10, 9, 9, 9, 14, 14, 10, 10, 10}
+	widths := []float64{18, 64, 9, 10, 9, 9, 9, 14, 14, 10, 10, 10}
 	for range cardFigures * mostOnCard {
 		widths = append(widths, 14)
 	}

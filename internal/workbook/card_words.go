@@ -71,7 +71,10 @@ func (l *layout) stopChecks(r *routeModel) []string {
 			quantity.FormatConcentration(p.ReadingKgPerM3), quantity.FormatConcentration(l.report.Job.Site.PeroxideLimitKgPerM3)))
 	}
 	out = append(out, cautionTexts(r, "danger", "caution")...)
-	return out[:min(len(out), mostStops)]
+	if left := len(out) - mostStops; left > 0 {
+		out = append(out[:mostStops-1], fmt.Sprintf("Read on Compare the %d cautions more for this route.", left+1))
+	}
+	return out
 }
 
 func (l *layout) chargeWords(r *routeModel, o *steps.Outcome, sieve string) string {
@@ -86,10 +89,10 @@ func (l *layout) chargeWords(r *routeModel, o *steps.Outcome, sieve string) stri
 		} else {
 			s += fmt.Sprintf(" in %s, bed %s long", strings.ReplaceAll(o.Apparatus, "-", " "), quantity.FormatLength(o.Figure("bed length")))
 		}
-		if lot.SieveHistory != "" {
-			s += "; beads activated: " + lot.SieveHistory
-		} else if lot.SieveHistoryK > 0 {
+		if lot.SieveHistoryK > 0 {
 			s += "; beads activated at " + quantity.FormatTemperature(lot.SieveHistoryK)
+		} else if lot.SieveHistory != "" {
+			s += "; beads: " + strings.ReplaceAll(lot.SieveHistory, "-", " ")
 		}
 		if sieve == routes.Regenerate {
 			s += "; drained beads go to regeneration"
@@ -221,7 +224,11 @@ func spaced(n, most int) (out []int) {
 func wasteWords(r *routeModel) (out []string) {
 	for _, line := range r.lines {
 		if line.Head == steps.Waste {
-			out = append(out, fmt.Sprintf("%s: %s %s a batch, %s.", capital(orWords(line.Label, line.Item)), significant(line.perBatch), symbol(line.Unit), oneLine(line.Basis)))
+			amount := significant(line.perBatch) + " " + symbol(line.Unit)
+			if line.Unit == "kg" {
+				amount = quantity.FormatMass(line.perBatch)
+			}
+			out = append(out, fmt.Sprintf("%s: %s a batch, %s.", capital(orWords(line.Label, line.Item)), amount, oneLine(line.Basis)))
 		}
 	}
 	if len(out) == 0 {
