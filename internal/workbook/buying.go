@@ -21,7 +21,7 @@ const (
 
 func (l *layout) buying() *grid {
 	g := newGrid(sheetBuying, "What to order for a year of the recommended routes, all lots together. Values of the program: after an edit of an input or a price the list is that of the run, no longer that of the sheet.",
-		tabResult, checkCell(), 22, 44, 11, 10, 10, 10, 10, 8, 10, 8, 9, 9, 12, 22, 14, 14)
+		tabResult, checkCell(), 22, 44, 11, 10, 10, 10, 10, 8, 10, 8, 12, 12, 12, 22, 14, 14)
 	g.mixed, g.frozenRows, g.frozenColumns = true, frameRows, 1
 	l.banner(g, frameRows+1)
 	list := l.report.Buying.Purchases
@@ -29,9 +29,16 @@ func (l *layout) buying() *grid {
 		g.put(1, g.next(), text(plain, "Nothing has to be bought: no lot has a route that reaches its target, or the lots are dry."))
 		return g
 	}
-	first := g.table(g.next(), fmt.Sprintf("Order list; days count from the earliest order, the first batch is on day %d", l.report.Buying.FirstBatchDay),
+	buying := &l.report.Buying
+	order, there := column{"Order on day", "1"}, column{"There by day", "1"}
+	name := fmt.Sprintf("Order list; days count from the earliest order, the first batch is on day %d", buying.FirstBatchDay)
+	if date := buying.DateOf(buying.FirstBatchDay); date != "" {
+		order, there = column{name: "Order on"}, column{name: "There by"}
+		name = fmt.Sprintf("Order list; the first order is placed on %s, the first batch is on %s", buying.FirstOrder, date)
+	}
+	first := g.table(g.next(), name,
 		[]column{{name: "Item"}, {name: "Specification"}, {"Process", "1"}, {"Losses", "1"}, {"Safety stock", "1"}, {"On hand", "1"}, {"To buy", "1"}, {name: "Unit"},
-			{"Pack", "1"}, {"Packs", "1"}, {"Order on day", "1"}, {"There by day", "1"}, {"Cost", l.currency()}, {name: "Price"}, {name: "Ordered by, date"}, {name: "Received by, date"}})
+			{"Pack", "1"}, {"Packs", "1"}, order, there, {"Cost", l.currency()}, {name: "Price"}, {name: "Ordered by, date"}, {name: "Received by, date"}})
 	row := first
 	total := 0.0
 	for i := range list {
@@ -76,14 +83,22 @@ func (l *layout) orderCells(g *grid, row int, p *costs.Purchase, o costs.Order, 
 	}
 	g.put(buyPack, row, number(size, unit).shown(formatFor(size)))
 	g.put(buyPacks, row, count(o.Count))
-	g.put(buyOrder, row, count(o.OrderDay))
-	g.put(buyThere, row, count(o.NeedDay))
+	g.put(buyOrder, row, l.dayCell(o.OrderDay))
+	g.put(buyThere, row, l.dayCell(o.NeedDay))
 	g.put(buyCost, row, number(float(o.Cost), l.currency()).shown(moneyFormat))
 	mark := string(o.Pack.Flag)
 	if o.Pack.Date != "" {
 		mark = strings.TrimPrefix(mark+", of "+o.Pack.Date, ", ")
 	}
 	g.put(buyCost+1, row, text(words, orWords(mark, "own")))
+}
+
+// dayCell is a day by its date where the job has one.
+func (l *layout) dayCell(day int) cell {
+	if date := l.report.Buying.DateOf(day); date != "" {
+		return text(program, date)
+	}
+	return count(day)
 }
 
 // orderNotes says of each item why these packs, how it is kept and carried.
