@@ -67,7 +67,10 @@ func (p *program) runCompare(c *cli.Context) error {
 	if err := errors.Join(q.outputsFree(), jobErr, settingsErr); err != nil {
 		return err
 	}
+	done, stop := p.progressBar(q.quiet)
+	opts.Progress = done
 	r, err := study.Compare(c.Context, j, cat, opts)
+	stop()
 	if err != nil {
 		return failed(err)
 	}

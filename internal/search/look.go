@@ -19,19 +19,26 @@ const (
 // everywhere scans the hand-overs coarsely, each point with the axes found best at
 // its neighbour and around them, and refines around the best.
 func (g *tuning) everywhere() {
-	for i, u := range g.grid() {
+	grid := g.grid()
+	lowest := make([]trial, len(grid)) // the best at each point
+	for i, u := range grid {
+		kept := g.best
 		start := spot{make([]int, len(g.axes)), u}
-		if i > 0 && g.found() {
-			start.at = g.best.spot.clone().at
+		g.best = trial{score: math.Inf(1)}
+		if i > 0 && kept.spot.at != nil {
+			start.at = slices.Clone(kept.spot.at)
 			g.descend(start, early)
-			continue
+		} else {
+			g.allAxes(start)
 		}
-		g.allAxes(start)
+		if lowest[i] = g.best; kept.score <= g.best.score {
+			g.best = kept
+		}
 	}
 	if !g.found() {
 		return
 	}
-	g.refine(1.0 / (coarsePoints - 1))
+	g.refineValleys(lowest)
 	before := g.best.score
 	if g.allAxes(g.best.spot.clone()); g.hasLate() {
 		g.descend(g.best.spot.clone(), all)
@@ -39,6 +46,33 @@ func (g *tuning) everywhere() {
 	if g.best.score < before {
 		g.refine(0.25 / (coarsePoints - 1))
 	}
+}
+
+// refineValleys refines around every point of a line of hand-overs that lies lower
+// than both its neighbours: where apparatus changes a cost may have several valleys.
+func (g *tuning) refineValleys(line []trial) {
+	const width = 1.0 / (coarsePoints - 1)
+	best := g.best
+	if len(g.places) != 1 {
+		g.refine(width)
+		return
+	}
+	at := func(i int) float64 {
+		if i < 0 || i >= len(line) {
+			return math.Inf(1)
+		}
+		return line[i].score
+	}
+	for i := range line {
+		if math.IsInf(at(i), 1) || at(i-1) < at(i) || at(i+1) < at(i) {
+			continue
+		}
+		g.best = line[i]
+		if g.refine(width); g.best.score < best.score {
+			best = g.best
+		}
+	}
+	g.best = best
 }
 
 // found reports whether any spot could be run.

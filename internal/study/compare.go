@@ -25,6 +25,11 @@ type Options struct {
 	Settings map[string]map[string]routes.Settings
 	// RankingOnly leaves out the break-evens, the trade-off and the grid of other lots.
 	RankingOnly bool
+	// Progress is told the parts that are done and all there are; it may be called
+	// from several goroutines, one at a time. May be nil.
+	Progress func(done, total int)
+
+	meter *meter
 }
 
 // Compare runs every sensible route of every lot and ranks them.
@@ -34,6 +39,7 @@ func Compare(ctx context.Context, j *job.Job, c *catalog.Catalog, o Options) (*R
 		return nil, err
 	}
 	r := &Report{Version: Version, CatalogDate: c.Date, PriceDate: costs.ReferenceDate(c, j), Job: j, Book: book, Warnings: j.Warnings}
+	o.meter = newMeter(o.Progress, parts*len(j.Lots))
 	if err := r.compareLots(ctx, c, o); err != nil {
 		return nil, err
 	}
@@ -44,7 +50,7 @@ func Compare(ctx context.Context, j *job.Job, c *catalog.Catalog, o Options) (*R
 		return nil, err
 	}
 	if !o.RankingOnly {
-		if err := r.decide(ctx, c); err != nil {
+		if err := r.decide(ctx, c, o.meter); err != nil {
 			return nil, err
 		}
 	}

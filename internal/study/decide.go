@@ -17,7 +17,7 @@ import (
 
 // decide adds to each lot what would change the answer: where routes change
 // places, what is given up for what, and the cheapest routes of other lots.
-func (r *Report) decide(ctx context.Context, c *catalog.Catalog) error {
+func (r *Report) decide(ctx context.Context, c *catalog.Catalog, progress *meter) error {
 	group, ctx := errgroup.WithContext(ctx)
 	group.SetLimit(8)
 	for i := range r.Lots {
@@ -34,6 +34,8 @@ func (r *Report) decide(ctx context.Context, c *catalog.Catalog) error {
 			if err := q.breakEvens(ctx); err != nil {
 				return err
 			}
+			progress.step()
+			defer progress.step()
 			return q.whatIf(ctx)
 		})
 	}

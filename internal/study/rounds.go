@@ -61,6 +61,7 @@ func (r *Report) compareOnce(ctx context.Context, c *catalog.Catalog, o Options)
 				return fmt.Errorf("lot %q: %w", lot.Name, err)
 			}
 			r.Lots[i] = l
+			o.meter.step()
 			return nil
 		})
 	}
