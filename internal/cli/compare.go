@@ -6,6 +6,7 @@ import (
 	"errors"
 	"fmt"
 	"path/filepath"
+	"slices"
 	"strings"
 
 	"github.com/urfave/cli/v2"
@@ -36,6 +37,7 @@ func (p *program) compare() *cli.Command {
 			onOff("force", "write over files that are there already"),
 			&cli.UintFlag{Name: "draws", Usage: "draws of the uncertain inputs, `N`; not used yet"},
 			&cli.Uint64Flag{Name: "seed", Usage: "seed of the draws, `N`; not used yet"},
+			&cli.StringFlag{Name: "explain", Usage: "print how every number of `ROUTE` came about, in place of the ranking"},
 			onOff("all", "print every route, not only the first of a lot"),
 			onOff("quiet", "print errors only"),
 		},
@@ -45,13 +47,13 @@ func (p *program) compare() *cli.Command {
 
 // request is what a compare command asks for.
 type request struct {
-	job, workbook, json, csv, settings string
-	demo, force, all, quiet            bool
+	job, workbook, json, csv, settings, explain string
+	demo, force, all, quiet                     bool
 }
 
 func (p *program) runCompare(c *cli.Context) error {
 	q := request{
-		workbook: c.String("workbook"), json: c.String("json"), csv: c.String("csv"), settings: c.String("settings-from"),
+		workbook: c.String("workbook"), json: c.String("json"), csv: c.String("csv"), settings: c.String("settings-from"), explain: c.String("explain"),
 		demo: c.Bool("demo"), force: c.Bool("force"), all: c.Bool("all"), quiet: c.Bool("quiet"),
 	}
 	if err := q.complete(c); err != nil {
@@ -73,6 +75,9 @@ func (p *program) runCompare(c *cli.Context) error {
 	stop()
 	if err != nil {
 		return failed(err)
+	}
+	if known := report.Explainable(r); q.explain != "" && !slices.Contains(known, q.explain) {
+		return misused(fmt.Sprintf("--explain %s: no lot has such a route", q.explain), didYouMean(q.explain, known, "compare --all prints the routes"))
 	}
 	if q.settings != "" && !q.quiet {
 		p.tunedAnew(q.settings, opts, r)
@@ -213,6 +218,9 @@ func (p *program) print(q request, r *study.Report, opts report.Options, doc []b
 		}
 		_, err := p.stdout.Write(doc)
 		return err
+	}
+	if q.explain != "" {
+		return report.Explain(p.stdout, r, q.explain)
 	}
 	if q.quiet {
 		return nil

@@ -38,7 +38,7 @@ func Compare(ctx context.Context, j *job.Job, c *catalog.Catalog, o Options) (*R
 	if err != nil {
 		return nil, err
 	}
-	r := &Report{Version: Version, CatalogDate: c.Date, PriceDate: costs.ReferenceDate(c, j), Job: j, Book: book, Warnings: j.Warnings}
+	r := &Report{Version: Version, CatalogDate: c.Date, PriceDate: costs.ReferenceDate(c, j), Job: j, Book: book, Warnings: j.Warnings, catalog: c}
 	o.meter = newMeter(o.Progress, parts*len(j.Lots))
 	if err := r.compareLots(ctx, c, o); err != nil {
 		return nil, err

@@ -13,7 +13,26 @@ import (
 // provenance lists the references that the report cites and the numbers that
 // rest on memory, common practice or an assumption.
 func provenance(r *Report, c *catalog.Catalog) ([]catalog.Source, []Weak) {
-	p := &shelf{catalog: c, cited: map[string]bool{}, weak: map[string]Weak{}}
+	p := gather(r, c)
+	return p.sources(), p.sorted()
+}
+
+// Behind are the inputs from the catalog that a route of a lot rests on, each with
+// its source and confidence, and the sources themselves.
+func (r *Report) Behind(l *Lot, route *Route) (inputs []Weak, sources []catalog.Source) {
+	one, lot := *r, *l
+	lot.Routes, lot.Excluded = []Route{*route}, nil
+	one.Lots = []Lot{lot}
+	one.Book = usedPrices(&one)
+	p := gather(&one, r.catalog)
+	for _, what := range slices.Sorted(maps.Keys(p.every)) {
+		inputs = append(inputs, p.every[what])
+	}
+	return inputs, p.sources()
+}
+
+func gather(r *Report, c *catalog.Catalog) *shelf {
+	p := &shelf{catalog: c, cited: map[string]bool{}, weak: map[string]Weak{}, every: map[string]Weak{}}
 	kinds := map[steps.Kind]bool{}
 	for _, l := range r.Lots {
 		p.solvent(l.Solvent)
@@ -48,7 +67,7 @@ func provenance(r *Report, c *catalog.Catalog) ([]catalog.Source, []Weak) {
 	p.prices(r)
 	p.apparatus(r)
 	p.emissions(r)
-	return p.sources(), p.sorted()
+	return p
 }
 
 // appliesTo reports whether an operating fact enters a route with these steps.
@@ -72,6 +91,7 @@ type shelf struct {
 	catalog *catalog.Catalog
 	cited   map[string]bool
 	weak    map[string]Weak
+	every   map[string]Weak // number, weak or not
 }
 
 func (p *shelf) cite(id string) {
@@ -88,8 +108,9 @@ func (p *shelf) note(what, text string, o catalog.Origin) {
 	if o.Own {
 		confidence = "own data, " + confidence
 	}
+	p.every[what] = Weak{What: what, Value: text, Confidence: confidence, Source: o.Source, Note: o.Note}
 	if o.Own || o.Confidence.Weak() {
-		p.weak[what] = Weak{What: what, Value: text, Confidence: confidence, Source: o.Source, Note: o.Note}
+		p.weak[what] = p.every[what]
 	}
 }
 

@@ -24,7 +24,8 @@ type Report struct {
 	Bookings    []Booking        // of apparatus by the best routes of all lots together
 	Warnings    []string
 
-	prices costs.Book // all of them
+	prices  costs.Book // all of them
+	catalog *catalog.Catalog
 }
 
 // Weak is a number that rests on memory, common practice or an assumption, or that
