@@ -46,7 +46,7 @@ func (l *layout) rangeChart(g *grid, lot *lotModel, drawn []*routeModel) {
 			derived(from(1)+"-"+from(0), median-low).in(unit).shown(moneyFormat), derived(from(2)+"-"+from(1), high-median).in(unit).shown(moneyFormat))
 	}
 	last := first + len(drawn) - 1
-	c := baseChart(excelize.BarStacked, fmt.Sprintf("Lot %d: cost per litre, 5 %% to median to 95 %% of the draws, %s", lot.no, unit))
+	c := baseChart(excelize.BarStacked, fmt.Sprintf("Lot %d: cost per litre, 5 %% to 95 %% of the draws, %s", lot.no, unit))
 	c.Format.AltText = fmt.Sprintf("Bars: range of the cost per litre of the first routes of lot %d, from the 5 %% to the 95 %% quantile, changing shade at the median. The numbers are on sheet Ranges, rows %d to %d.", lot.no, first, last)
 	gap, overlap := uint(55), 100
 	c.GapWidth, c.Overlap = &gap, &overlap

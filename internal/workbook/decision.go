@@ -35,7 +35,7 @@ func (l *layout) decision() *grid {
 	g.printColumns = decideChance
 	g.mixed, g.frozenRows, g.portrait, g.onePage = true, frameRows, true, true
 	l.banner(g, frameRows+1)
-	g.across(decideRoute, decideChance, frameRows+1, words, l.report.Job.Title)
+	g.across(1, decideChance, frameRows+1, words, l.ofRun()+". "+shortened(l.report.Job.Title, mostTitle))
 	full := l.inFull()
 	for _, lot := range l.lots[:full] {
 		l.decideFull(g, lot)
@@ -118,7 +118,7 @@ func (l *layout) placeRow(g *grid, row, place int, what string, lot *lotModel) {
 		{decideLow, ranged, rangeLitre, l.money("L"), moneyFormat, func(r *routeModel) float64 { return tidy(r.bands()[1].Low) }},
 		{decideHigh, ranged, rangeLitre + 2, l.money("L"), moneyFormat, func(r *routeModel) float64 { return tidy(r.bands()[1].High) }},
 		{decideAttended, compared, compareAttended, "h", decimals(2), func(r *routeModel) float64 { return tidy(r.Run.HoursAttended) }},
-		{decideWater, compared, compareWater, "mg/kg", l.waterFormat(), func(r *routeModel) float64 { return r.waterOut }},
+		{decideWater, compared, compareWater, "mg/kg", decimals(2), func(r *routeModel) float64 { return r.waterOut }},
 		{decideChance, ranged, rangeChance, "%", "0.0", func(r *routeModel) float64 { return tidy(r.chance()) }},
 	})
 }

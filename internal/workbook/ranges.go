@@ -54,26 +54,14 @@ func (l *layout) rangeBlock(g *grid) {
 	}
 	first := g.table(g.next(), name, columns)
 	l.rangeRows = rows{first, first + len(l.routes) - 1}
-	formats := l.rangeFormats()
 	for i, r := range l.routes {
-		l.rangeRow(g, i, r, formats)
+		l.rangeRow(g, i, r)
 	}
 	l.noRoutes(g, first, len(l.routes))
 	if !l.rangeRows.empty() {
 		place := fmt.Sprintf("D%d:D%d", first, l.rangeRows.last)
 		g.flags = append(g.flags, flag{place, fmt.Sprintf(`$D%d="yes"`, first), pass}, flag{place, fmt.Sprintf(`$D%d="no"`, first), warn})
 	}
-}
-
-// rangeFormats are the number formats of water, cost and hours.
-func (l *layout) rangeFormats() [3]string {
-	var all [3][]float64
-	for _, r := range l.routes {
-		for i, b := range r.bands() {
-			all[i] = append(all[i], tidy(b.Median))
-		}
-	}
-	return [3]string{formatFor(all[0]...), moneyFormat, formatFor(all[2]...)}
 }
 
 // bands are water (mg/kg), cost per litre and hours; NaN where not drawn.
@@ -108,11 +96,11 @@ func (r *routeModel) sure(assurance float64) string {
 	return "no"
 }
 
-func (l *layout) rangeRow(g *grid, i int, r *routeModel, formats [3]string) {
+func (l *layout) rangeRow(g *grid, i int, r *routeModel) {
 	row := l.rangeRows.at(i)
 	g.putRow(row, text(words, r.lot.Job.Name), text(words, r.ID), finite(r.chance(), "%", "0.0"),
 		text(program, r.sure(l.report.Job.Assurance)))
-	units := [3]string{"mg/kg", l.money("L"), "h"}
+	units, formats := [3]string{"mg/kg", l.money("L"), "h"}, [3]string{decimals(2), moneyFormat, decimals(2)}
 	for k, b := range r.bands() {
 		for j, v := range []float64{b.Low, b.Median, b.High} {
 			g.put(rangeWater+3*k+j, row, finite(v, units[k], formats[k]))

@@ -19,12 +19,17 @@ func (l *layout) runDate() string {
 // banner says at the top of a sheet of results to which run they belong, and that
 // it has to be repeated as soon as anything is edited.
 func (l *layout) banner(g *grid, row int) {
+	state := fmt.Sprintf(`IF(%s>0,"Edited since: %s","")`, changedName, runAgain)
+	g.put(1, row, text(plain, l.ofRun()))
+	g.put(1, row+1, cell{look: message, formula: state, value: ""})
+	g.flags = append(g.flags, flag{at(1, row+1), fmt.Sprintf("LEN($A%d)>0", row+1), warn})
+}
+
+// ofRun names the run that results belong to.
+func (l *layout) ofRun() string {
 	of := "Results of the run of " + l.runDate()
 	if l.report.Draws > 0 {
 		of += fmt.Sprintf(", %d draws, seed %d", l.report.Draws, l.report.Seed)
 	}
-	state := fmt.Sprintf(`IF(%s>0,"Edited since: %s","")`, changedName, runAgain)
-	g.put(1, row, text(plain, of))
-	g.put(1, row+1, cell{look: message, formula: state, value: ""})
-	g.flags = append(g.flags, flag{at(1, row+1), fmt.Sprintf("LEN($A%d)>0", row+1), warn})
+	return of
 }
