@@ -67,6 +67,7 @@ func lay(m *model) *layout {
 	add(l.inputs, l.priceList, l.steps, l.costs, l.compare, l.ranges, l.buying, l.benchCard)
 	l.grids = append([]*grid{l.decision()}, l.grids...) // it shows what later sheets hold
 	add(l.checks, l.sources)
+	l.workPages()
 	return l
 }
 
