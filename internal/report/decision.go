@@ -43,6 +43,14 @@ func (p *page) bookings(r *study.Report) {
 	for _, b := range r.Bookings {
 		p.say(2, 2, "%s: %s of %s h (%.0f %%)", b.Item, quantity.Significant(b.Share*b.PerWeek, 3), quantity.Significant(b.PerWeek, 3), 100*b.Share)
 	}
+	for _, s := range r.Shared {
+		var parts []string
+		for i, lot := range s.Lots {
+			parts = append(parts, lot+" "+money(s.Parts[i]))
+		}
+		p.say(2, 2, "%s serves %d lots; each bill holds its whole year, %s %s together, where it costs %s once. Split by batches: %s.",
+			s.Item, len(s.Lots), money(s.Charged), r.Job.Currency, money(s.Yearly), strings.Join(parts, ", "))
+	}
 }
 
 // front prints what is given up for what: the routes that no other beats or equals

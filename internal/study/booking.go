@@ -40,6 +40,7 @@ func (r *Report) book(c *catalog.Catalog) error {
 			r.enter(b, l.Job.Name, b.Hours*l.Job.BatchesPerYear/weeksPerYear)
 		}
 	}
+	r.share()
 	for _, b := range r.Bookings {
 		if b.Share > 1+1e-9 {
 			r.Warnings = append(slices.Clone(r.Warnings), fmt.Sprintf("%s is booked %.0f %%: %s of %s hours a week; by %s",

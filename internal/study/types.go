@@ -22,6 +22,7 @@ type Report struct {
 	Sources     []catalog.Source // cited, sorted by id
 	Weak        []Weak           // numbers that rest on memory, practice or assumption
 	Bookings    []Booking        // of apparatus by the best routes of all lots together
+	Shared      []Shared         // equipment that several of them pay for
 	Warnings    []string
 
 	prices  costs.Book // all of them
