@@ -14,7 +14,7 @@ func (s *shelf) readAgents() {
 	s.each(agentsFile, func(n *document.Node) {
 		for _, e := range n.Entries() {
 			s.checkKey(e)
-			entries[e.Key] = e.Node.Map(agentKeys...)
+			entries[e.Key], s.agentTops[e.Key] = e.Node.Map(agentKeys...), e.Node
 			s.cat.Agents[e.Key] = s.agent(e.Key, e.Node, entries[e.Key], scaled)
 		}
 	})

@@ -138,6 +138,26 @@ func TestOwnFilesInOrder(t *testing.T) {
 	}
 }
 
+// A service keeps its name when only its price is the user's own.
+func TestOwnPriceOfAService(t *testing.T) {
+	const text = "prices:\n  kept under: 2026-11-01\n  common: {source: memory, confidence: memory}\n  items:\n    technician: {price: 61 EUR/hour}\n"
+	cat, err := catalog.LoadWith(catalog.File{Name: "a.yaml", Data: []byte(text)})
+	if err != nil {
+		t.Fatal(err)
+	}
+	if p := cat.Prices["technician"]; p.Label != load(t).Prices["technician"].Label || p.Amount != "61" || !p.Own {
+		t.Errorf("got %+v", p)
+	}
+}
+
+// An exposure limit that is set for a short time only is a limit too (Ontario
+// Regulation 833, ethanol).
+func TestShortTermLimitOfEthanol(t *testing.T) {
+	if got := load(t).Solvents["ethanol"].Hazards.ExposureLimit; got != "1000 ppm short term" {
+		t.Errorf("exposure limit %q", got)
+	}
+}
+
 func TestOwnFilesWithProblems(t *testing.T) {
 	four := string(ownFile(t, "four-numbers.yaml").Data)
 	own := string(ownFile(t, "own.yaml").Data)
@@ -152,7 +172,9 @@ func TestOwnFilesWithProblems(t *testing.T) {
 		{"source missing", four, ", source: bench-book, confidence: published, note: at its boiling point", ", confidence: published", `heat of vaporization: "source" is missing`},
 		{"source unknown", four, "source: bench-book, confidence: published, note: at its boiling point", "source: bench-boook, confidence: published", `"bench-boook" is not in sources.yaml or the own files; did you mean "bench-book"?`},
 		{"source in a circle", four, "bench-book: ", "other: bench-book\n  bench-book: other #", `"other" is only the id of another source; write the reference out`},
-		{"class unknown", four, "class: aromatic", "class: aromatics", `bench-xylene: nothing is said of bench-xylene with alumina (class "aromatics")`},
+		{"class unknown", four, "class: aromatic", "class: aromatics", `bench-xylene: nothing is said of bench-xylene (class "aromatics") with alumina, calcium-chloride, calcium-hydride, calcium-oxide, calcium-sulfate, magnesium, magnesium-sulfate, phosphorus-pentoxide, potassium-carbonate, potassium-hydroxide, sieve-13x, sieve-3a, sieve-4a, sieve-5a, silica-gel, sodium, sodium-sulfate; did you mean "aromatic"?`},
+		{"class of no kin", four, "class: aromatic", "class: silicone", `; classes: acid, alcohol, alkane, amide, amine, aromatic, aryl-chloride, carbonate-ester, chlorinated, ester, ether, ketone, nitrile, small-alcohol, sulfoxide; a class of your own needs its verdicts under "matrix"`},
+		{"agent without verdicts", own, "sieve-3a-pilot: {ok: as sieve 3A}", "sieve-3a: {ok: as sieve 3A}", `sieve-3a-pilot: nothing is said of sieve-3a-pilot with the classes aromatic; give a verdict for each under "matrix"`},
 		{"formula", four, "C8H10", "C8H10(OH)", `formula: "C8H10(OH)" is not a formula that can be read`},
 		{"molar mass beside the formula", four, "boiling point:", "molar mass: {value: 92 g/mol, source: bench-book, confidence: published}\n    boiling point:", `molar mass: C8H10 weighs 106.168 g/mol, not 92.000`},
 		{"too much water", four, "441 mg/kg", "30 % m/m", `water solubility: "30 % m/m" is a mole fraction of 0.72; one solubility describes a water-immiscible solvent up to 0.35 only`},

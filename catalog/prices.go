@@ -1,6 +1,7 @@
 package catalog
 
 import (
+	"cmp"
 	"strings"
 
 	"parch/internal/document"
@@ -72,7 +73,7 @@ func (s *shelf) price(e document.Entry, unit string, list priceList) Price {
 	if water := f.Get("water"); water != nil {
 		p.WaterMax = s.optional(water, quantity.WaterContent)
 	}
-	if p.Label = s.label(e.Key); p.Label == "" || f.Has("label") {
+	if p.Label = cmp.Or(s.label(e.Key), s.cat.Prices[e.Key].Label); p.Label == "" || f.Has("label") {
 		p.Label = f.Need("label").Text()
 	}
 	money, ok := f.Need("price").Money()

@@ -17,6 +17,8 @@ type shelf struct {
 	tables []*table
 	cited  map[string]bool           // source ids that a number rests on
 	tops   map[string]*document.Node // of the solvents, by key
+
+	agentTops map[string]*document.Node // of the agents, by key
 }
 
 type file struct {
@@ -27,7 +29,7 @@ type file struct {
 }
 
 func newShelf(names []string) *shelf {
-	s := &shelf{cat: &Catalog{}, cited: map[string]bool{}, tops: map[string]*document.Node{}}
+	s := &shelf{cat: &Catalog{}, cited: map[string]bool{}, tops: map[string]*document.Node{}, agentTops: map[string]*document.Node{}}
 	for _, name := range names {
 		s.files = append(s.files, file{name: name})
 	}

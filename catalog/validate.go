@@ -193,24 +193,53 @@ func (s *shelf) checkAliases() {
 }
 
 // checkPairs makes sure that the matrix speaks of every solvent with every agent.
-// A gap is reported where it can be closed: at an own solvent or own agent, or in
-// the matrix.
+// A gap is reported where it can be closed: at an own solvent or own agent, in one
+// line, or in the matrix.
 func (s *shelf) checkPairs() {
 	agents := keysOf(s.cat.Agents)
+	classes := map[string][]string{} // without a verdict, by own agent
 	for _, key := range keysOf(s.cat.Solvents) {
 		v := s.cat.Solvents[key]
 		if key == waterKey {
 			continue
 		}
+		var missing []string
 		for _, agent := range agents {
-			if _, ok := s.cat.Verdict(v, agent); ok {
-				continue
+			switch _, ok := s.cat.Verdict(v, agent); {
+			case ok:
+			case v.Own:
+				missing = append(missing, agent)
+			case s.cat.Agents[agent].Own:
+				if !slices.Contains(classes[agent], v.Class) {
+					classes[agent] = append(classes[agent], v.Class)
+				}
+			default:
+				s.root(matrixFile).Fail("nothing is said of %s with %s (class %q)", v.Key, agent, v.Class)
 			}
-			where := s.root(matrixFile)
-			if v.Own {
-				where = s.tops[key]
-			}
-			where.Fail("nothing is said of %s with %s (class %q)", v.Key, agent, v.Class)
+		}
+		if len(missing) > 0 {
+			s.tops[key].Fail("nothing is said of %s (class %q) with %s%s", key, v.Class, strings.Join(missing, ", "), s.classHint(key, v.Class))
 		}
 	}
+	for _, agent := range keysOf(classes) {
+		slices.Sort(classes[agent])
+		s.agentTops[agent].Fail(`nothing is said of %s with the classes %s; give a verdict for each under "matrix"`, agent, strings.Join(classes[agent], ", "))
+	}
+}
+
+// classHint says what may be done about a class that the matrix is silent of.
+func (s *shelf) classHint(key, class string) string {
+	known := map[string]bool{}
+	for _, v := range s.cat.Solvents {
+		if v.Key != waterKey && !v.Own {
+			known[v.Class] = true
+		}
+	}
+	if known[class] {
+		return `; give the verdicts under "matrix"`
+	}
+	if near := s.tops[key].Offer(class, keysOf(known)); near != "" {
+		return near
+	}
+	return "; classes: " + strings.Join(keysOf(known), ", ") + `; a class of your own needs its verdicts under "matrix"`
 }

@@ -114,6 +114,9 @@ func findSolvent(cat *catalog.Catalog, name string) (*catalog.Solvent, error) {
 	if near := document.Nearest(name, known); len(near) > 0 {
 		hint = "did you mean " + strings.Join(near, " or ") + "?"
 	}
+	if s := cat.Solvents["water"]; s != nil && strings.EqualFold(strings.TrimSpace(name), s.Name) {
+		return nil, misused(`"water" is what is taken out: a solvent is wanted here`, "its own numbers: parch catalog solvents water")
+	}
 	return nil, misused(fmt.Sprintf("%q is not a solvent of the catalog", name), hint)
 }
 

@@ -241,7 +241,8 @@ func valueText(v *catalog.Value) string {
 	return v.Text + citeOrigin(v.Origin)
 }
 
-// pairs lists the drying agents, those that are refused with the reason.
+// pairs lists the drying agents, with the reason of each that is refused, that
+// wants caution or whose verdict is the user's own.
 func (p *page) pairs(pairs []inspect.Pair) {
 	if len(pairs) == 0 {
 		return
@@ -259,7 +260,7 @@ func (p *page) pairs(pairs []inspect.Pair) {
 		}
 	}
 	for _, pair := range pairs {
-		if !pair.Allowed() && pair.Reason != "" {
+		if (pair.Word != "ok" || pair.Own) && pair.Reason != "" {
 			p.say(5, 4, "%s: %s%s", pair.Agent, asOwn(pair.Reason, pair.Own), cite(pair.Source))
 		}
 	}
