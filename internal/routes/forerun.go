@@ -19,21 +19,7 @@ func (c *Case) runForerun(lot steps.Lot, goal float64, choice choice) (steps.Out
 	if err != nil {
 		return steps.Outcome{}, err
 	}
-	still, charges := c.Still()
-	rig := steps.ForerunRig{
-		HeaterW: c.heaterW(still), HeatShare: c.practice("heat-share"), RoomK: c.Job.Site.RoomK, Charges: charges, Stages: choice.stages,
-	}
-	rules := steps.ForerunRules{
-		HeelShare: c.practice("forerun-heel"), LowestOutlet: c.practice("trap-outlet-minimum"),
-		SetUpS: c.practice("forerun-attended"), AttendedShare: c.practice("trap-attended-share"), ShutDownS: c.practice("trap-shutdown"),
-		VapourLossPerDay: c.practice("vapour-loss-per-day"), CoolingFlowM3S: c.practice("cooling-flow"), CoolingRiseK: c.practice("cooling-rise"),
-	}
-	if choice.stages > 0 {
-		rig.RefluxRatio, rules.SettleColumnS = c.practice("forerun-reflux"), c.practice("forerun-column")
-	}
-	if choice.hot {
-		rules.SetUpS = c.practice("draining-time") // the trap is turned off and runs out
-	}
+	rig, rules := c.forerunRig(choice.stages), c.forerunRules(choice)
 	o, err := steps.RunForerun(eq, lot, goal, rig, rules)
 	if err != nil {
 		return o, err
@@ -49,6 +35,32 @@ func (c *Case) runForerun(lot steps.Lot, goal float64, choice choice) (steps.Out
 		return o, refusal{fmt.Errorf("a forerun over %d stages would take %.0f %% of the lot with it", choice.stages, 100*lost)}
 	}
 	return o, nil
+}
+
+func (c *Case) forerunRig(stages int) steps.ForerunRig {
+	still, charges := c.Still()
+	rig := steps.ForerunRig{
+		HeaterW: c.heaterW(still), HeatShare: c.practice("heat-share"), RoomK: c.Job.Site.RoomK, Charges: charges, Stages: stages,
+	}
+	if stages > 0 {
+		rig.RefluxRatio = c.practice("forerun-reflux")
+	}
+	return rig
+}
+
+func (c *Case) forerunRules(choice choice) steps.ForerunRules {
+	rules := steps.ForerunRules{
+		HeelShare: c.practice("forerun-heel"), LowestOutlet: c.practice("trap-outlet-minimum"),
+		SetUpS: c.practice("forerun-attended"), AttendedShare: c.practice("trap-attended-share"), ShutDownS: c.practice("trap-shutdown"),
+		VapourLossPerDay: c.practice("vapour-loss-per-day"), CoolingFlowM3S: c.practice("cooling-flow"), CoolingRiseK: c.practice("cooling-rise"),
+	}
+	if choice.stages > 0 {
+		rules.SettleColumnS = c.practice("forerun-column")
+	}
+	if choice.hot {
+		rules.SetUpS = c.practice("draining-time") // the trap is turned off and runs out
+	}
+	return rules
 }
 
 // ColumnStages are the columns that a forerun may be drawn over: a simple still,

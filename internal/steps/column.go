@@ -66,15 +66,20 @@ func newBed(m *thermo.Mixture, feed Lot, sorbent Sorbent, rig ColumnRig) (*bed, 
 	}
 	b.volumeM3 = LotVolume(m, feed, rig.TempK)
 	b.stream = streamOf(m.Solvent, rig.TempK, rig.WaterMolarM3, rig.Association)
-	b.areaM2 = math.Pi / 4 * rig.DiameterM * rig.DiameterM
-	b.velocityMS = rig.FlowM3S / b.areaM2
-	sherwood := packedSherwood(b.reynolds(), b.stream.schmidt())
-	b.filmMS, b.insideMS = b.stream.film(sherwood, sorbent.BeadDiameterM), insideBead(b.stream, sorbent)
-	areaPerM3 := 6 * (1 - rig.VoidShare) / sorbent.BeadDiameterM
-	b.htuM = b.velocityMS / (inSeries(b.filmMS, b.insideMS) * areaPerM3)
+	b.transfer()
 	removedKg := feed.SolventKg * (feed.Water()/(1-feed.Water()) - b.floorWater/(1-b.floorWater))
 	b.frontMPerM3 = removedKg / b.volumeM3 / (b.areaM2 * b.bulk() * spare)
 	return b, nil
+}
+
+// transfer works out how the liquid meets the beads.
+func (b *bed) transfer() {
+	b.areaM2 = math.Pi / 4 * b.rig.DiameterM * b.rig.DiameterM
+	b.velocityMS = b.rig.FlowM3S / b.areaM2
+	sherwood := packedSherwood(b.reynolds(), b.stream.schmidt())
+	b.filmMS, b.insideMS = b.stream.film(sherwood, b.sorbent.BeadDiameterM), insideBead(b.stream, b.sorbent)
+	areaPerM3 := 6 * (1 - b.rig.VoidShare) / b.sorbent.BeadDiameterM
+	b.htuM = b.velocityMS / (inSeries(b.filmMS, b.insideMS) * areaPerM3)
 }
 
 func (r ColumnRig) check() error {

@@ -128,6 +128,7 @@ func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog
 		}
 	}
 	l.invest(site)
+	l.follow(k)
 	sort.SliceStable(l.Excluded, func(a, b int) bool { return l.Excluded[a].ID < l.Excluded[b].ID })
 	return l, nil
 }

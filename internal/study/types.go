@@ -44,8 +44,9 @@ type Lot struct {
 	Uncertainty float64 // kg/kg, U of the mean of the injections
 	Detection   float64 // kg/kg, detection limit of the test
 	Injections  int
-	NothingToDo string  // why no drying is needed, or ""
-	Routes      []Route // ranked first, then those that miss, nearest first
+	NothingToDo string        // why no drying is needed, or ""
+	Routes      []Route       // ranked first, then those that miss, nearest first
+	Follow      routes.Follow // for readers that follow the routes by closed forms; empty where they cannot
 	Excluded    []routes.Excluded
 	BreakEvens  []BreakEven
 	Front       []FrontPoint // routes that reach the limit and have their prices

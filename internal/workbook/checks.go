@@ -69,7 +69,11 @@ func (l *layout) masterRows(g *grid, always, unedited rows) {
 
 // rerun holds while an input is edited that only the program can follow.
 func (l *layout) rerun() string {
-	return fmt.Sprintf(`COUNTIF(%s,"%s")>0`, on(sheetInputs, l.inputRows.column(colState)), runAgain)
+	f := fmt.Sprintf(`COUNTIF(%s,"%s")>0`, on(sheetInputs, l.inputRows.column(colState)), runAgain)
+	if len(l.routes) > 0 {
+		f = fmt.Sprintf(`COUNTIF(%s,"%s")>0`, on(sheetSteps, l.resultRows.column(stepState)), runAgain)
+	}
+	return f
 }
 
 func (l *layout) testRows(g *grid, first int, tests []test, flagFormula, wordFormula string) rows {
@@ -102,6 +106,7 @@ func (l *layout) alwaysTests() []test {
 	if len(l.routes) == 0 {
 		return tests
 	}
+	tests = append(tests, l.followTests()...)
 	tests = append(tests, l.billTests()...)
 	tests = append(tests, l.balanceTests()...)
 	return append(tests, l.rankTests()...)
@@ -128,6 +133,12 @@ func (l *layout) inputTests() []test {
 			derived(fmt.Sprintf("SUMPRODUCT(ISNA(MATCH(%s,%s,0))*1)", items, known), 0.0).shown("0"), none(), 0, "lines"})
 	}
 	return tests
+}
+
+// followTests count what only a new run can follow.
+func (l *layout) followTests() []test {
+	states := on(sheetSteps, l.resultRows.column(stepState))
+	return []test{{"Routes for which parch has to be run again", whole(fmt.Sprintf(`COUNTIF(%s,"%s")`, states, runAgain), 0), none(), 0, "routes"}}
 }
 
 func (l *layout) errorTests() (tests []test) {

@@ -19,7 +19,7 @@ const (
 )
 
 func (l *layout) compare() *grid {
-	g := newGrid(sheetCompare, "One row per route. Costs and ranks follow the prices; water, hours and amounts are results of the program. Money in "+l.currency()+".",
+	g := newGrid(sheetCompare, "One row per route. Water, hours, amounts, costs and ranks follow the inputs and the prices; State says where the program has to be run again. Money in "+l.currency()+".",
 		tabResult, checkCell(), 26, 36, 9, 12, 10, 11, 10, 7, 9, 9, 9, 11, 11, 12, 12, 10, 13, 16)
 	l.compareBlock(g)
 	l.alongBlock(g)
@@ -59,23 +59,22 @@ func (l *layout) compareBlock(g *grid) {
 
 func (l *layout) compareRow(g *grid, i int) {
 	r, row := l.routes[i], l.compareRows.at(i)
-	rank, litre, result := l.rankRows.at(i), l.litreRows.at(i), l.resultRows.at(i)
+	rank, litre := l.rankRows.at(i), l.litreRows.at(i)
 	money, water := l.currency(), l.waterFormat()
 	costs := func(column, sourceRow int, v any) cell { return derived(on(sheetCosts, at(column, sourceRow)), v) }
-	steps := func(column int, v float64) cell { return derived(on(sheetSteps, at(column, result)), v) }
 	var place any = ""
 	if r.rank > 0 {
 		place = float64(r.rank)
 	}
 	carbon := blank(formula) // missing is no zero
-	if !math.IsNaN(r.Run.CO2eKg) {
-		carbon = steps(resultCarbon, r.Run.CO2eKg).in("kg CO2e").shown(decimals(2))
+	if !math.IsNaN(r.Run.CO2eKg) && r.lot.Follow.Lot != nil {
+		carbon = costs(litreCarbon, litre, r.Run.CO2eKg).in("kg CO2e").shown(decimals(2))
 	}
 	rankAt := on(sheetCosts, at(rankPlace, rank))
 	g.putRow(row, text(words, r.lot.Job.Name), text(words, r.ID),
 		costs(rankReaches, rank, yesNo(r.reaches)),
 		costs(rankWater, rank, r.waterOut).in("mg/kg").shown(water),
-		steps(resultAttended, r.Run.HoursAttended).in("h").shown(decimals(2)),
+		costs(litreAttended, litre, r.Run.HoursAttended).in("h").shown(decimals(2)),
 		costs(litreTotal, litre, r.total).in(money).shown(moneyFormat),
 		costs(litreCost, litre, r.perLitre).in(l.money("L")).shown(moneyFormat),
 		derived(fmt.Sprintf(`IF(%s>0,%s,"")`, rankAt, rankAt), place).shown("0"),
@@ -88,5 +87,5 @@ func (l *layout) compareRow(g *grid, i int) {
 		costs(rankLimit, rank, r.lot.acceptAt).in("mg/kg").shown(water),
 		derived(l.lotName(r.lot, "target_water"), r.lot.target).in("mg/kg").shown(water),
 		derived(fmt.Sprintf("MAX(D%d,job_lowest_plotted)", row), max(r.waterOut, lowestPlotted)).in("mg/kg").shown(water),
-		l.stateLink(r.lot))
+		l.routeState(r))
 }

@@ -2,6 +2,7 @@ package workbook
 
 import (
 	"fmt"
+	"math"
 
 	"parch/internal/steps"
 )
@@ -20,6 +21,11 @@ const (
 	billAmount  = 13
 	billPerUnit = 14
 	billBasis   = 15
+	billPlace   = 16 // of the quantity on Steps
+	billColumn  = 17
+	billTimes   = 18
+	billFactor  = 19
+	billCarbon  = 20
 )
 
 // Columns of the blocks below the bill.
@@ -34,6 +40,10 @@ const (
 	litreEnergy    = 9
 	litreBatches   = 10
 	litreYear      = 11
+	litreAttended  = 12
+	litreCooling   = 13
+	litreLost      = 14
+	litreCarbon    = 15
 
 	rankLot       = 3
 	rankWater     = 4
@@ -54,7 +64,8 @@ var headNames = map[steps.Head]string{
 
 func (l *layout) costs() *grid {
 	g := newGrid(sheetCosts, "The bill of each route: quantity × price = amount, for one batch. Below the lines: cost by head, cost per litre, target and rank. Amounts are exact and shown to a hundredth of a cent; the bill is rounded once, where it is written to the cent.",
-		tabWork, checkCell(), 26, 30, 10, 13, 12, 17, 11, 11, 11, 11, 11, 11, 11, 11, 52)
+		tabWork, checkCell(), 26, 30, 10, 13, 12, 17, 11, 11, 11, 11, 11, 11, 11, 11, 52, 9, 9, 12, 11, 11)
+	g.printColumns = billBasis
 	g.mixed, g.frozenRows, g.frozenColumns = true, frameRows, 3 // the blocks share only these columns
 	l.billBlock(g)
 	l.headBlock(g)
@@ -70,7 +81,8 @@ func (l *layout) costs() *grid {
 func (l *layout) billBlock(g *grid) {
 	first := g.table(frameRows+2, "Lines of the bill", []column{{name: "Lot"}, {name: "Route id"}, {"Route no", "1"}, {name: "Head"}, {"Step, 0 for the route", "1"},
 		{name: "Item"}, {"Quantity", "1"}, {name: "Unit"}, {name: "Counted per"}, {"Shared by", "batches"}, {"Quantity per batch", "1"},
-		{"Unit price", "1"}, {"Amount", l.currency()}, {name: "Unit of the price"}, {name: "Basis"}})
+		{"Unit price", "1"}, {"Amount", l.currency()}, {name: "Unit of the price"}, {name: "Basis"},
+		{"Row on Steps", "1"}, {"Column on Steps", "1"}, {"Times", "1"}, {"Emissions of a unit", "kg CO2e"}, {"Emissions", "kg CO2e"}})
 	row := first
 	for _, r := range l.routes {
 		for _, line := range r.lines {
@@ -90,12 +102,53 @@ func (l *layout) billRow(g *grid, row int, r *routeModel, line lineModel) {
 	quantity := decimals(mostDecimals)
 	g.putRow(row, append(l.routeKey(r),
 		text(plain, headNames[line.Head]), count(line.Step), text(words, line.Item),
-		number(line.quantity, symbol(line.Unit)).shown(quantity), text(plain, symbol(line.Unit)), text(plain, per),
+		cell{look: formula, unit: symbol(line.Unit), format: quantity,
+			formula: fmt.Sprintf("INDEX(%s,%s,%s)*%s", l.usesArea(), at(billPlace, row), at(billColumn, row), at(billTimes, row))}, text(plain, symbol(line.Unit)), text(plain, per),
 		derived(fmt.Sprintf(`IF(%s="year",%s,1)`, at(billPer, row), l.lotName(r.lot, "batches_per_year")), line.shared).shown(formatFor(line.shared)),
 		derived(at(billQty, row)+"/"+at(billShared, row), line.perBatch).in(symbol(line.Unit)).shown(quantity),
 		derived(priceName(line.Item, line.Unit), line.price).in(l.money(line.Unit)).shown(l.priceFormat()),
 		derived(at(billBatch, row)+"*"+at(billPrice, row), line.amount).in(l.currency()).shown(exactMoney),
 		text(plain, l.money(line.Unit)), text(words, line.Basis))...)
+	place, column, times, _ := l.useOf(r, line)
+	g.put(billPlace, row, count(place-l.lotRows.rows.first+1))
+	g.put(billColumn, row, count(column))
+	g.put(billTimes, row, number(times, "1").shown("General"))
+	if l.carbonOf(r, line) == 0 {
+		return
+	}
+	g.put(billFactor, row, finite(l.carbonOf(r, line), "kg CO2e", "0.000"))
+	g.put(billCarbon, row, cell{look: formula, formula: at(billBatch, row) + "*" + at(billFactor, row), unit: "kg CO2e", format: "0.000"})
+}
+
+// usesArea is the part of Steps that holds all quantities.
+func (l *layout) usesArea() string {
+	return on(sheetSteps, fixed(1, l.lotRows.rows.first)+":"+fixed(commonIndex("follows"), l.resultRows.last))
+}
+
+// carbonOf is what a unit of a line emits, NaN where a factor is missing.
+func (l *layout) carbonOf(r *routeModel, line lineModel) float64 {
+	k := r.lot.Follow.Lot
+	if k == nil {
+		return math.NaN()
+	}
+	kgPerLitre := k["solvent kg/m3"] / 1000
+	making, burning := k["kg CO2e making/"+r.lot.Job.Solvent], k["kg CO2e burning/"+r.lot.Job.Solvent]
+	switch {
+	case line.Item == "electricity":
+		return k["kg CO2e electricity"]
+	case line.Head == steps.SolventLost:
+		return kgPerLitre * (making + burning)
+	case line.Head == steps.Purchase:
+		return kgPerLitre * making
+	case line.Head == steps.Waste && line.Step > 0 && r.stages[line.Step-1].Kind == steps.Buy:
+		return burning
+	case line.Head == steps.Agent:
+		if f, ok := k["kg CO2e making/"+line.Item]; ok {
+			return f
+		}
+		return math.NaN()
+	}
+	return 0
 }
 
 func (l *layout) headBlock(g *grid) {
@@ -149,23 +202,37 @@ func (l *layout) writtenBlock(g *grid) {
 }
 
 func (l *layout) litreBlock(g *grid) {
-	first := g.table(g.next(), "Cost per litre and per year", []column{{name: "Lot"}, {name: "Route id"}, {"Route no", "1"},
+	first := g.table(g.next(), "Cost per litre and per year, use of a batch", []column{{name: "Lot"}, {name: "Route id"}, {"Route no", "1"},
 		{"Cost per batch", l.currency()}, {"Litres delivered", "L"}, {"Cost per litre", l.money("L")}, {"Hours total", "h"}, {"Waste", "kg"},
-		{"Energy", "kWh"}, {"Batches per year", "1/yr"}, {"Cost per year", l.currency()}})
+		{"Energy", "kWh"}, {"Batches per year", "1/yr"}, {"Cost per year", l.currency()}, {"Hours attended", "h"}, {"Cooling water", "m3"}, {"Solvent lost", "L"}, {"Emissions", "kg CO2e"}})
 	l.litreRows = rows{first, first + len(l.routes) - 1}
-	amounts, routeNos := l.lineRows.column(billAmount), l.lineRows.column(3)
+	routeNos, quantities := l.lineRows.column(3), l.lineRows.column(billBatch)
 	for i, r := range l.routes {
 		row, result := first+i, l.resultRows.at(i)
-		from := func(column int, v float64, unit string, d int) cell {
-			return derived(on(sheetSteps, at(column, result)), v).in(unit).shown(decimals(d))
+		live := func(f, unit string, d int) cell {
+			return cell{look: formula, formula: f, unit: unit, format: decimals(d)}
 		}
+		sum := func(of string, criteria ...string) string {
+			f := fmt.Sprintf("SUMIFS(%s,%s,$C%d", of, routeNos, row)
+			for i := 0; i < len(criteria); i += 2 {
+				f += "," + criteria[i] + `,"` + criteria[i+1] + `"`
+			}
+			return f + ")"
+		}
+		items, heads, units := l.lineRows.column(billItem), l.lineRows.column(billHead), l.lineRows.column(billUnit)
 		g.putRow(row, append(l.routeKey(r),
-			derived(fmt.Sprintf("SUMIFS(%s,%s,C%d)", amounts, routeNos, row), r.total).in(l.currency()).shown(moneyFormat),
-			from(resultDelivered, r.litres, "L", 3),
-			derived(at(litreTotal, row)+"/"+at(litreDelivered, row), r.perLitre).in(l.money("L")).shown(moneyFormat),
-			from(resultHours, r.values[1], "h", 2), from(resultWaste, r.values[2], "kg", 3), from(resultEnergy, r.values[3], "kWh", 2),
-			derived(l.lotName(r.lot, "batches_per_year"), r.lot.batches).in("1/yr").shown(formatFor(r.lot.batches)),
-			derived(at(litreTotal, row)+"*"+at(litreBatches, row), r.perYear).in(l.currency()).shown(moneyFormat))...)
+			live(sum(l.lineRows.column(billAmount)), l.currency(), 2).shown(exactMoney),
+			live(on(sheetSteps, at(resultDelivered, result)), "L", 3),
+			live(at(litreTotal, row)+"/"+at(litreDelivered, row), l.money("L"), 2).shown(exactMoney),
+			live(on(sheetSteps, at(resultHours, result)), "h", 2),
+			live(sum(quantities, heads, headNames[steps.Waste], units, "kg"), "kg", 3),
+			live(sum(quantities, items, "electricity"), "kWh", 2),
+			live(l.lotName(r.lot, "batches_per_year"), "1/yr", 0).shown(formatFor(r.lot.batches)),
+			live(at(litreTotal, row)+"*"+at(litreBatches, row), l.currency(), 2).shown(moneyFormat),
+			live(sum(quantities, items, "technician"), "h", 3),
+			live(sum(quantities, items, "cooling-water"), "m3", 4),
+			live(sum(quantities, heads, headNames[steps.SolventLost]), "L", 3),
+			live(sum(l.lineRows.column(billCarbon)), "kg CO2e", 2))...)
 	}
 	l.noRoutes(g, first, len(l.routes))
 }

@@ -100,6 +100,10 @@ func (w *file) prepare(f *excelize.File) error {
 	return f.SetCalcProps(&excelize.CalcPropsOptions{FullCalcOnLoad: &full})
 }
 
+// storedDigits are the digits stored of what a formula gives: any reader that
+// calculates has all of them again.
+const storedDigits = 12
+
 // emitter writes grids and keeps the styles that they share.
 type emitter struct {
 	file     *excelize.File
@@ -175,6 +179,9 @@ func (e *emitter) row(sw *excelize.StreamWriter, g *grid, row int) error {
 		value := c.value
 		if s, ok := value.(string); ok {
 			value = clean(s)
+		}
+		if v, ok := value.(float64); ok && c.formula != "" {
+			value = significant(v, storedDigits)
 		}
 		values[i] = excelize.Cell{StyleID: id, Formula: c.formula, Value: value}
 	}

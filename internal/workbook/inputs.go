@@ -32,11 +32,14 @@ func (l *layout) inputs() *grid {
 	first := g.table(frameRows+2, "The run", inputColumns)
 	g.frozenRows = first - 1
 	l.runInputs(g)
+	l.siteInputs(g)
 	l.lotInputs = make([]rows, len(l.lots))
 	for i, lot := range l.lots {
 		l.lotBlock(g, i, lot)
 	}
 	l.inputRows = rows{first, g.last()}
+	l.name("input_values", sheetInputs, colValue, 1)
+	l.names[len(l.names)-1].place = on(sheetInputs, area(colValue, 1, l.inputRows.last))
 	l.siteBlock(g)
 	l.equipmentBlock(g)
 	l.defaultsBlock(g)
@@ -98,23 +101,116 @@ const (
 func (l *layout) lotBlock(g *grid, i int, lot *lotModel) {
 	g.put(1, g.next(), text(block, fmt.Sprintf("Lot %d: %s", lot.no, lot.Job.Name)))
 	l.lotInputs[i].first = g.last() + 1
-	enter := func(name, label string, v float64, unit, source, after string, low, high float64) {
-		name = l.lotName(lot, name)
-		row := editable(g, name, label, number(v, unit).shown(formatFor(v)), unit, source, after)
-		l.name(name, sheetInputs, colValue, row)
-		g.limits = append(g.limits, limit{place: at(colValue, row), low: low, high: high,
-			prompt: fmt.Sprintf("%s, %s. When edited: %s.", label, unit, after),
-			refuse: fmt.Sprintf("A number from %g to %g, in %s.", low, high, unit)})
-	}
-	fact(g, "", "Solvent", text(program, lot.solventName()), "", "job file")
-	enter("batch_litres", "Batch", lot.batchLitres, "L", "job file", runAgain, 0.001, mostLitres)
-	enter("batches_per_year", "Batches per year", lot.batches, "1/yr", "job file", follows, 0.001, mostBatches)
-	enter("start_water", "Water at the start", lot.start, "mg/kg", "job file; dissolved water as read", runAgain, 0, mostWater)
-	enter("target_water", "Target", lot.target, "mg/kg", "job file", runAgain, 0, mostWater)
+	l.lotFirst(g, lot)
 	l.assayRows(g, lot)
 	l.lotFacts(g, lot)
+	l.routeSettings(g, lot)
 	l.lotInputs[i].last = g.last()
 	l.stateRow(g, i, lot)
+}
+
+// enter is an input that is a number, with its name, its limits and what follows.
+func (l *layout) enter(g *grid, name, label string, v float64, unit, source, after string, low, high float64) int {
+	row := editable(g, name, label, number(v, unit).shown(formatFor(tidy(v))), unit, source, after)
+	l.name(name, sheetInputs, colValue, row)
+	in := unit
+	if in == "1" {
+		in = "as a plain number"
+	} else {
+		in = "in " + in
+	}
+	g.limits = append(g.limits, limit{place: at(colValue, row), low: low, high: high,
+		prompt: fmt.Sprintf("%s, %s. When edited: %s.", label, in, after),
+		refuse: fmt.Sprintf("A number from %g to %g, %s.", low, high, in)})
+	return row
+}
+
+// choice is an input that is a word of a list.
+func (l *layout) choice(g *grid, name, label, word, source, after string, list rows) int {
+	row := editable(g, name, label, text(input, word), "", source, after)
+	l.name(name, sheetInputs, colValue, row)
+	g.limits = append(g.limits, limit{place: at(colValue, row), words: list.column(colValue),
+		prompt: fmt.Sprintf("%s. When edited: %s.", label, after), refuse: "Choose a word of the list."})
+	return row
+}
+
+// after is what happens when an input of the lot is edited that its closed forms read.
+func (lot *lotModel) after() string {
+	if lot.Follow.Lot == nil {
+		return runAgain
+	}
+	return followsWithin
+}
+
+func (l *layout) lotFirst(g *grid, lot *lotModel) {
+	j := lot.Job
+	enter := func(name, label string, v float64, unit, source, after string, low, high float64) int {
+		return l.enter(g, l.lotName(lot, name), label, v, unit, source, after, low, high)
+	}
+	fact(g, "", "Solvent", text(program, lot.solventName()), "", "job file")
+	enter("batch_litres", "Batch", lot.batchLitres, "L", "job file", lot.after(), 0.001, mostLitres)
+	enter("batches_per_year", "Batches per year", lot.batches, "1/yr", "job file", follows, 0.001, mostBatches)
+	enter("start_water", "Water at the start", lot.start, "mg/kg", "job file; dissolved water as read", lot.after(), 0, mostWater)
+	enter("free_water", "Free water", tidy(j.FreeWaterM3*1e6), "mL", "job file; stands below the batch", lot.after(), 0, mostLitres)
+	enter("vessel_height", "Liquid height in the vessel", j.VesselHeightM, "m", "job file; 0: a vessel as deep as it is wide", lot.after(), 0, 20)
+	enter("heater", "Heater", j.HeaterW, "W", "job file; 0: the heater of the still", lot.after(), 0, 1e6)
+	history := "no history is given"
+	if j.SieveHistory != "" {
+		history = "from the sieve's history: " + j.SieveHistory
+	}
+	enter("residual_loading", "Water on the sieve before use", j.ResidualLoading*100, "g/100 g", history, lot.after(), 0, 20)
+	enter("target_water", "Target", lot.target, "mg/kg", "job file", lot.after(), 0, mostWater)
+}
+
+// routeSettings are the free choices of the routes, which the closed forms read by
+// their rows.
+func (l *layout) routeSettings(g *grid, lot *lotModel) {
+	for _, r := range lot.routes {
+		for _, s := range r.stages {
+			label := func(what string) string { return fmt.Sprintf("%s, step %d: %s", r.ID, s.no, what) }
+			name := func(what string) string { return fmt.Sprintf("lot%d_route%d_%s%d", lot.no, r.no, what, s.no) }
+			if s.handOver > 0 {
+				s.setRow = l.enter(g, name("handover_"), label("water handed over"), s.handOver, "mg/kg", "tuned by the program", lot.after(), 0, mostWater)
+			}
+			if s.hours > 0 {
+				s.hoursRow = l.enter(g, name("hours_"), label("stands"), s.hours, "h", "tuned by the program", lot.after(), 0.01, 8784)
+				s.stirRow = l.choice(g, name("stirred_"), label("stirred"), yesNo(s.stirred), "tuned by the program", lot.after(), l.yesNoList)
+			}
+			if s.sieve != "" {
+				s.sieveRow = l.choice(g, name("sieve_"), label("sieve after use"), s.sieve, "tuned by the program", lot.after(), l.sieveList)
+			}
+		}
+	}
+}
+
+// siteInputs are read by the closed forms of all lots.
+func (l *layout) siteInputs(g *grid) {
+	g.put(1, g.next(), text(block, "All lots"))
+	l.siteEdits.first = g.last() + 1
+	f := l.sharedFollow()
+	after := followsWithin
+	if f == nil {
+		after = runAgain
+	}
+	l.enter(g, "site_heat_share", "Share of the heat that reaches the liquid", f["heat share"], "1", "catalog, practice: heat-share", after, 0.05, 1)
+	l.enter(g, "site_least_dose", "Least dose of a sieve", f["least dose kg/m3"], "g/L", "catalog, practice: dose-minimum", after, 0, 1000)
+	l.usesRow = map[string]int{}
+	for _, agent := range l.followedSieves() {
+		name := "uses_" + strings.ReplaceAll(agent, "-", "_")
+		l.usesRow[agent] = l.enter(g, name, "Uses of a charge of "+agent, l.sieveUses(agent), "1", "catalog: where it is regenerated", after, 1, 1000)
+	}
+	l.siteEdits.last = g.last()
+	list := func(words ...string) (r rows) {
+		r.first = g.last() + 1
+		for _, w := range words {
+			r.last = fact(g, "", "Allowed word", text(program, w), "", "")
+		}
+		return r
+	}
+	edits := fmt.Sprintf("SUMPRODUCT((%s<>%s)*1)", l.siteEdits.column(colValue), l.siteEdits.column(colRun))
+	row := fact(g, "site_edited", "Edited of these", whole(edits, 0), "", "")
+	l.name("site_edited", sheetInputs, colValue, row)
+	l.yesNoList, l.sieveList = list("yes", "no"), list("regenerate", "discard")
 }
 
 func (lot *lotModel) solventName() string {
@@ -156,21 +252,11 @@ func (l *layout) lotFacts(g *grid, lot *lotModel) {
 	show := func(label string, v float64, unit, source string) {
 		fact(g, "", label, number(v, unit).shown(formatFor(tidy(v))), unit, source)
 	}
-	show("Free water", j.FreeWaterM3*1e6, "mL", "job file")
 	if j.NotBelow > 0 {
 		show("Not below", j.NotBelow*mgPerKg, "mg/kg", "job file")
 	}
 	if j.NeededWithinS > 0 {
 		show("Needed within", j.NeededWithinS/3600, "h", "job file")
-	}
-	if j.HeaterW > 0 {
-		show("Heater", j.HeaterW, "W", "job file")
-	}
-	if j.VesselHeightM > 0 {
-		show("Liquid height in the vessel", j.VesselHeightM, "m", "job file")
-	}
-	if j.ResidualLoading > 0 {
-		show("Water on the sieve before use", j.ResidualLoading*100, "g/100 g", "from the sieve's history: "+j.SieveHistory)
 	}
 	if j.Peroxide != nil {
 		show("Peroxide reading", j.Peroxide.ReadingKgPerM3*1000, "mg/L", "tested "+j.Peroxide.Date)
@@ -191,6 +277,12 @@ func (l *layout) stateRow(g *grid, i int, lot *lotModel) {
 	g.put(colSource, row, text(words, "empty while the results of the program belong to the inputs above"))
 	g.put(colState, row, cell{look: formula, formula: f, value: ""})
 	l.name(name, sheetInputs, colState, row)
+	edited := func(r rows) string {
+		return fmt.Sprintf(`SUMPRODUCT((%s<>%s)*(%s="%s"))`, r.column(colValue), r.column(colRun), r.column(colAfter), followsWithin)
+	}
+	name = l.lotName(lot, "edited")
+	row = fact(g, name, "Edited inputs that its closed forms read", whole(edited(states)+"+site_edited", 0), "", "of this lot and of all lots")
+	l.name(name, sheetInputs, colValue, row)
 }
 
 func (l *layout) siteBlock(g *grid) {

@@ -37,6 +37,7 @@ type lotModel struct {
 	acceptAt               float64 // mg/kg
 	shown                  bool
 	routes                 []*routeModel
+	row, place             int // among the lots on Steps; 0 where the lot is not followed
 }
 
 type lineModel struct {
@@ -51,6 +52,7 @@ type routeModel struct {
 	study.Route
 	lot       *lotModel
 	no        int
+	stages    []*stageModel
 	lines     []lineModel
 	heads     []float64 // as steps.Heads
 	headSum   float64
@@ -125,6 +127,7 @@ func newRoute(no int, lot *lotModel, route study.Route, book costs.Book) (*route
 	if route.Run.LitresDelivered <= 0 {
 		return r, fmt.Errorf("lot %q, route %s delivers no solvent", lot.Job.Name, route.ID)
 	}
+	r.stages = stagesOf(r, lot.Follow.Steps[route.ID])
 	for _, line := range route.Bill.Lines {
 		l, err := newLine(line, lot.batches, book)
 		if err != nil {
@@ -133,6 +136,9 @@ func newRoute(no int, lot *lotModel, route study.Route, book costs.Book) (*route
 		r.lines = append(r.lines, l)
 		r.heads[slices.Index(steps.Heads, line.Head)] += l.amount
 		r.total += l.amount
+	}
+	if err := r.addUnused(lot.batches, book); err != nil {
+		return r, err
 	}
 	for _, h := range r.heads {
 		r.headSum += h
@@ -151,6 +157,39 @@ func newRoute(no int, lot *lotModel, route study.Route, book costs.Book) (*route
 	r.values = []float64{r.perLitre, tidy(run.HoursTotal), tidy(run.WasteKg), tidy(run.EnergyKWh)}
 	return r, nil
 }
+
+// addUnused adds the lines that an edit of the settings can bring about: the
+// stirrer of a soak that stands still in the run. It marks sieves that pay for an
+// oven.
+func (r *routeModel) addUnused(batches float64, book costs.Book) error {
+	price, priced := book["electricity"]
+	for _, s := range r.stages {
+		if s.constants == nil || s.sieve == "" {
+			continue
+		}
+		stirrer := false
+		for _, line := range r.lines {
+			key := ""
+			if line.Step == s.no {
+				key = keyOfUse(s, line)
+			}
+			s.ovenBilled = s.ovenBilled || key == "ovenkwh"
+			stirrer = stirrer || key == "energy"
+		}
+		if s.Kind != steps.Soak || stirrer || !priced {
+			continue
+		}
+		line, err := newLine(costs.Line{Head: steps.Energy, Step: s.no, Item: price.Item, Unit: price.Unit, UnitPrice: price.PerUnit, Basis: stirrerBasis}, batches, book)
+		if err != nil {
+			return err
+		}
+		r.lines = append(r.lines, line)
+	}
+	return nil
+}
+
+// stirrerBasis is how the bill names the energy of a stirrer.
+const stirrerBasis = "stirrer power x hours"
 
 func newLine(line costs.Line, batches float64, book costs.Book) (lineModel, error) {
 	price, ok := book[line.Item]

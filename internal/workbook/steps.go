@@ -3,6 +3,7 @@ package workbook
 import (
 	"fmt"
 	"math"
+	"slices"
 	"strings"
 
 	"parch/internal/steps"
@@ -33,44 +34,79 @@ func (l *layout) allSteps() (out []stepModel) {
 }
 
 func (l *layout) steps() *grid {
-	g := newGrid(sheetSteps, "What each step does, computed by the program. These values change only by a new run; the column State says when one is needed.",
-		tabWork, checkCell(), 26, 30, 10, 9, 10, 14, 10, 10, 10, 10, 10, 10, 12, 10, 10, 10, 44, 18)
+	widths := append([]float64{26, 30, 9, 9, 10}, slices.Repeat([]float64{12}, 150)...)
+	widths[stepWhy-1], widths[stepState-1] = 44, 18
+	g := newGrid(sheetSteps, "What each step does. The blocks of lots and steps follow the inputs by the closed forms and curves of the program; the column State says where only a new run can.",
+		tabWork, checkCell(), widths...)
 	g.mixed, g.frozenRows, g.frozenColumns = true, frameRows, 3 // the blocks share only these columns
 	all := l.allSteps()
+	l.liveRows(g)
+	l.resultBlock(g)
 	l.stepBlock(g, all)
 	l.balanceBlock(g, all)
-	l.resultBlock(g)
 	l.figureBlock(g, all)
-	l.settingBlock(g)
-	g.flags = append(g.flags, flag{fmt.Sprintf("R6:R%d", g.last()), "$R6=\"" + runAgain + "\"", warn})
+	widest := 0
+	for _, b := range append(l.blocks, l.lotRows) {
+		widest = max(widest, b.column(b.columns[len(b.columns)-1].key))
+	}
+	g.widths = g.widths[:max(widest, stepState)]
+	g.printColumns = stepState
+	for _, r := range []rows{l.resultRows, l.flowRows} {
+		if !r.empty() {
+			g.flags = append(g.flags, flag{fmt.Sprintf("R%d:R%d", r.first, r.last), fmt.Sprintf("$R%d=\"%s\"", r.first, runAgain), warn})
+		}
+	}
 	return g
 }
 
+// stepBlock sums up the steps in the order of the routes.
 func (l *layout) stepBlock(g *grid, all []stepModel) {
-	first := g.table(frameRows+2, "Steps", []column{{name: "Lot"}, {name: "Route id"}, {"Route no", "1"}, {"Step", "1"}, {name: "Kind"},
+	first := g.table(g.next(), "Steps of the routes", []column{{name: "Lot"}, {name: "Route id"}, {"Route no", "1"}, {"Step", "1"}, {name: "Kind"},
 		{name: "Agent"}, {"Water in", "mg/kg"}, {"Water out", "mg/kg"}, {"Floor", "mg/kg"}, {"Hours total", "h"}, {"Hours attended", "h"},
-		{"Energy", "kWh"}, {"Cooling water", "L"}, {"Agent charged", "kg"}, {"Solvent lost", "L"}, {"Waste", "kg"}, {name: "Why it stops"}, {name: "State"}})
+		{"Energy", "kWh"}, {"Cooling water", "L"}, {"Agent charged", "kg"}, {"Solvent lost", "L"}, {"Place", "1"}, {name: "Why it stopped in the run"}, {name: "State"}})
 	l.flowRows = rows{first, first + len(all) - 1}
 	water := func(get func(stepModel) float64) string { return formatFor(each(all, get)...) }
 	in := water(func(s stepModel) float64 { return s.In.Water() * mgPerKg })
 	out := water(func(s stepModel) float64 { return s.Out.Water() * mgPerKg })
-	floor, hours := decimals(2), decimals(2)
 	for i, s := range all {
 		row := first + i
+		live := s.route.stages[s.no-1]
 		g.putRow(row, l.stepKey(s)...)
+		from := func(unit, format string, keys ...string) cell {
+			f := ""
+			for _, key := range keys {
+				f += fmt.Sprintf("+INDEX(%s,$P%d)", l.liveArea(key), row)
+			}
+			if unit == "L" && keys[0] == "cooling" {
+				f += "*1000"
+			}
+			return cell{look: formula, formula: f[1:], unit: unit, format: format}
+		}
 		for c, x := range []cell{
 			text(plain, string(s.Kind)), text(words, s.Agent),
-			number(s.In.Water()*mgPerKg, "mg/kg").shown(in), number(s.Out.Water()*mgPerKg, "mg/kg").shown(out),
-			finite(s.Floor*mgPerKg, "mg/kg", floor),
-			number(s.HoursTotal, "h").shown(hours), number(s.HoursAttended, "h").shown(hours),
-			number(s.EnergyKWh, "kWh").shown(hours), number(s.CoolingWaterL, "L").shown(decimals(1)),
-			number(s.AgentKg, "kg").shown(decimals(3)), number(s.SolventLostL, "L").shown(decimals(3)),
-			number(s.WasteKg, "kg").shown(decimals(3)), text(words, why(s.Outcome)), l.stateLink(s.route.lot),
+			from("mg/kg", in, "win"), from("mg/kg", out, "wout"), finite(s.Floor*mgPerKg, "mg/kg", decimals(2)),
+			from("h", decimals(2), "hours"), from("h", decimals(2), "attended", "besides"), from("kWh", decimals(2), "energy", "ovenkwh"),
+			from("L", decimals(1), "cooling"), from("kg", decimals(3), "agent"), from("L", decimals(3), "loss1", "loss2", "loss3"),
+			count(live.row - l.lotRows.rows.first + 1), text(words, why(s.Outcome)), l.routeState(s.route),
 		} {
 			g.put(5+c, row, x)
 		}
 	}
 	l.noRoutes(g, first, len(all))
+}
+
+// liveArea is a common column over all live blocks.
+func (l *layout) liveArea(key string) string {
+	return area(commonIndex(key), l.lotRows.rows.first, l.liveLast())
+}
+
+// liveLast is the last row of the live blocks.
+func (l *layout) liveLast() int {
+	last := max(l.lotRows.rows.last, l.lotRows.rows.first)
+	for _, b := range l.blocks {
+		last = max(last, b.rows.last)
+	}
+	return last
 }
 
 // noRoutes says so where a block has no rows.
@@ -94,8 +130,9 @@ func (l *layout) routeKey(r *routeModel) []cell {
 	return []cell{text(words, r.lot.Job.Name), text(words, r.ID), count(r.no)}
 }
 
-func (l *layout) stateLink(lot *lotModel) cell {
-	return cell{look: formula, formula: l.lotName(lot, "run_state"), value: ""}
+// routeState is empty while the figures of a route belong to the inputs.
+func (l *layout) routeState(r *routeModel) cell {
+	return cell{look: formula, formula: on(sheetSteps, at(stepState, l.resultRows.at(r.no-1)))}
 }
 
 func why(o steps.Outcome) string {
@@ -132,45 +169,88 @@ func (l *layout) balanceBlock(g *grid, all []stepModel) {
 
 // Columns of the results of the routes.
 const (
-	resultWater = 4 + iota
+	resultLast = 4 + iota
+	resultSolvent
+	resultWaterKg
+	resultWater
+	resultTests
 	resultHours
-	resultAttended
-	resultEnergy
-	resultCooling
-	resultLost
 	resultDelivered
 	resultAgent
-	resultWaste
-	resultCarbon
+	resultUnfollowed
+	resultOutside
+	resultOne
 )
 
 func (l *layout) resultBlock(g *grid) {
-	first := g.table(g.next(), "Results of the routes, per batch", []column{{name: "Lot"}, {name: "Route id"}, {"Route no", "1"},
-		{"Water out", "mg/kg"}, {"Hours total", "h"}, {"Hours attended", "h"}, {"Energy", "kWh"}, {"Cooling water", "L"}, {"Solvent lost", "L"},
-		{"Litres delivered", "L"}, {"Agent", "kg"}, {"Waste", "kg"}, {"Emissions", "kg CO2e"}})
-	for _, c := range []int{14, 15, 16} {
+	first := g.table(g.next(), "Results of the routes, per batch", []column{{name: "Lot"}, {name: "Route id"}, {"Route no", "1"}, {"Place of the last step", "1"},
+		{"Solvent out", "kg"}, {"Water out", "kg"}, {"Water out", "mg/kg"}, {"Hours of tests", "h"}, {"Hours total", "h"}, {"Litres delivered", "L"}, {"Agent", "kg"},
+		{"Followed only by the program", "1"}, {"Out of range", "1"}, {"One", "1"}})
+	for _, c := range []int{15, 16} {
 		g.put(c, first-1, blank(heading))
 	}
 	g.put(stepWhy, first-1, text(heading, "In words"))
 	g.put(stepState, first-1, text(heading, "State"))
 	water := l.waterFormat()
-	for i, r := range l.routes {
-		row, run := first+i, r.Run
-		agent := 0.0
-		for _, key := range sortedKeys(run.AgentKg) {
-			agent += run.AgentKg[key]
-		}
-		g.putRow(row, append(l.routeKey(r),
-			number(r.waterOut, "mg/kg").shown(water), number(run.HoursTotal, "h").shown(decimals(2)),
-			number(run.HoursAttended, "h").shown(decimals(2)), number(run.EnergyKWh, "kWh").shown(decimals(2)),
-			number(run.CoolingWaterL, "L").shown(decimals(1)), number(run.SolventLostL, "L").shown(decimals(3)),
-			number(run.LitresDelivered, "L").shown(decimals(3)), number(agent, "kg").shown(decimals(3)),
-			number(run.WasteKg, "kg").shown(decimals(3)), finite(run.CO2eKg, "kg CO2e", decimals(2)))...)
-		g.put(stepWhy, row, text(words, r.Label))
-		g.put(stepState, row, l.stateLink(r.lot))
-	}
 	l.resultRows = rows{first, first + len(l.routes) - 1}
+	l.oneRow = first
+	for i, r := range l.routes {
+		row := first + i
+		live := func(f, unit, format string) cell { return cell{look: formula, formula: f, unit: unit, format: format} }
+		pick := func(key string) string { return fmt.Sprintf("INDEX(%s,%s)", l.liveArea(key), at(resultLast, row)) }
+		sum := func(key string) string {
+			return fmt.Sprintf("SUMIFS(%s,%s,$C%d)", l.liveArea(key), l.liveArea("route"), row)
+		}
+		last := r.stages[len(r.stages)-1]
+		tests := r.Run.HoursTotal
+		for _, o := range r.Run.Outcomes {
+			tests -= o.HoursTotal
+		}
+		g.putRow(row, append(l.routeKey(r), count(last.row-l.lotRows.rows.first+1),
+			live(pick("Sout"), "kg", decimals(3)), live(pick("Wout"), "kg", "0.000E+00"), live(pick("wout"), "mg/kg", water),
+			number(tests, "h").shown(decimals(2)), live(sum("hours")+"+"+at(resultTests, row), "h", decimals(2)),
+			l.delivered(r, row), live(sum("agent"), "kg", decimals(3)), count(l.unfollowed(r)),
+			l.outside(r, row), count(1))...)
+		g.put(stepWhy, row, text(words, r.Label))
+		g.put(stepState, row, cell{look: formula, formula: fmt.Sprintf(`IF((%s<>"")+%s*%s+%s>0,"%s","")`, l.lotName(r.lot, "run_state"),
+			at(resultUnfollowed, row), l.lotName(r.lot, "edited"), at(resultOutside, row), runAgain)})
+	}
 	l.noRoutes(g, first, len(l.routes))
+}
+
+// outside counts what of a route lies beyond the curves and conditions of its
+// closed forms; a lot that needs no drying counts too.
+func (l *layout) outside(r *routeModel, row int) cell {
+	f := fmt.Sprintf("COUNTIFS(%s,$C%d,%s,0)", l.liveArea("route"), row, l.liveArea("follows"))
+	if r.lot.Follow.Lot != nil {
+		f += "+1-" + l.lotName(r.lot, "to_be_dried")
+	}
+	return cell{look: formula, formula: f, unit: "1", format: "0"}
+}
+
+// delivered is the volume of the product at room temperature, from additive volumes.
+func (l *layout) delivered(r *routeModel, row int) cell {
+	if r.lot.Follow.Lot == nil {
+		return number(r.litres, "L").shown(decimals(3))
+	}
+	f := fmt.Sprintf("(%s/lot%d_solvent_density+%s/lot%d_water_density)*1000", at(resultSolvent, row), r.lot.no, at(resultWaterKg, row), r.lot.no)
+	return cell{look: formula, formula: f, unit: "L", format: decimals(3)}
+}
+
+// unfollowed counts the steps of a route, and the lines of its bill, that only the
+// program can follow.
+func (l *layout) unfollowed(r *routeModel) (n int) {
+	for _, s := range r.stages {
+		if s.constants == nil {
+			n++
+		}
+	}
+	for _, line := range r.lines {
+		if _, _, _, ok := l.useOf(r, line); !ok && line.Step == 0 {
+			n++
+		}
+	}
+	return n
 }
 
 func (l *layout) waterFormat() string {
@@ -196,30 +276,6 @@ func (l *layout) figureBlock(g *grid, all []stepModel) {
 				g.put(11, row, text(plain, "there is none"))
 			}
 			row++
-		}
-	}
-}
-
-// settingBlock lists what was tuned; doses follow from it.
-func (l *layout) settingBlock(g *grid) {
-	row := g.table(g.next(), "Settings of the routes", []column{{name: "Lot"}, {name: "Route id"}, {"Route no", "1"}, {},
-		{name: "Setting"}, {}, {}, {}, {"Value", "1"}, {name: "Unit"}})
-	for _, r := range l.routes {
-		put := func(name string, value cell, unit string) {
-			g.putRow(row, append(l.routeKey(r), blank(plain), text(plain, name))...)
-			g.put(9, row, value)
-			g.put(10, row, text(plain, unit))
-			row++
-		}
-		s := r.Run.Settings
-		for i, w := range s.HandOverMgPerKg {
-			put(fmt.Sprintf("water handed over by step %d", i+1), number(w, "mg/kg").shown(formatFor(tidy(w))), "mg/kg")
-		}
-		for i, h := range s.SoakHours {
-			put(fmt.Sprintf("time of soak %d", i+1), number(h, "h").shown(formatFor(tidy(h))), "h")
-		}
-		for i, word := range s.Sieve {
-			put(fmt.Sprintf("sieve of soak %d", i+1), text(program, word), "")
 		}
 	}
 }

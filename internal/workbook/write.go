@@ -18,6 +18,7 @@ const (
 	sheetDecision  = "Decision"
 	sheetInputs    = "Inputs"
 	sheetPrices    = "Prices"
+	sheetCurves    = "Curves"
 	sheetSteps     = "Steps"
 	sheetCosts     = "Costs"
 	sheetCompare   = "Compare"
@@ -47,8 +48,14 @@ func Write(w io.Writer, r *study.Report) error {
 	if err != nil {
 		return fmt.Errorf("workbook: %w", err)
 	}
-	l := lay(m)
+	l, err := layLive(m)
+	if err != nil {
+		return fmt.Errorf("workbook: %w", err)
+	}
 	grids := append([]*grid{l.readMe()}, l.grids...)
+	if err := evaluate(grids, l.names); err != nil {
+		return fmt.Errorf("workbook: %w", err)
+	}
 	out := &file{title: "Drying routes: " + r.Job.Title, created: r.CatalogDate, grids: grids, names: l.names}
 	if err := out.write(w); err != nil {
 		return fmt.Errorf("workbook: %w", err)
@@ -56,15 +63,55 @@ func Write(w io.Writer, r *study.Report) error {
 	return nil
 }
 
+// layLive lays out the sheets. Steps that the sheet would get wrong are given up and
+// shown as values of the program.
+func layLive(m *model) (*layout, error) {
+	for {
+		l := lay(m)
+		e, err := newEvaluator(l.grids, l.names)
+		if err != nil {
+			return nil, err
+		}
+		again, err := l.fallBack(e)
+		if err := errors.Join(err, l.failed); err != nil || !again {
+			return l, err
+		}
+	}
+}
+
+// evaluate gives every formula the value that the sheets compute for it.
+func evaluate(grids []*grid, names []definedName) error {
+	for _, g := range grids {
+		for _, row := range g.rows {
+			for c := range row {
+				if row[c].formula != "" {
+					row[c].value = nil
+				}
+			}
+		}
+	}
+	e, err := newEvaluator(grids, names)
+	if err != nil {
+		return err
+	}
+	for _, g := range grids {
+		if err := e.fill(g); err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
 // lay lays out all sheets but the first, which names them.
 func lay(m *model) *layout {
 	l := &layout{model: m}
+	l.inOrder()
 	add := func(sheets ...func() *grid) {
 		for _, sheet := range sheets {
 			l.grids = append(l.grids, sheet())
 		}
 	}
-	add(l.inputs, l.priceList, l.steps, l.costs, l.compare, l.ranges, l.buying, l.benchCard)
+	add(l.inputs, l.priceList, l.curves, l.steps, l.costs, l.compare, l.ranges, l.buying, l.benchCard)
 	l.grids = append([]*grid{l.decision()}, l.grids...) // it shows what later sheets hold
 	add(l.checks, l.sources)
 	l.workPages()
@@ -81,10 +128,20 @@ type layout struct {
 	lotInputs     []rows // inputs of each lot
 	objectiveRow  int
 	objectiveList rows
+	siteEdits     rows
+	usesRow       map[string]int // of the uses of an agent
+	yesNoList     rows
+	sieveList     rows
 	priceRows     rows
-	flowRows      rows // steps, one by one
+	flowRows      rows              // steps, one by one
+	curveRows     map[curveKey]rows // places in the columns of their kind
+	curveColumns  []curveColumn
+	lotRows       *liveBlock
+	blocks        []*liveBlock
 	stepRows      rows // balances
 	resultRows    rows // results of the routes
+	oneRow        int  // holds the number one in the column of results
+	failed        error
 	lineRows      rows // bill
 	headRows      rows // cost by head
 	writtenRows   rows // the same, written to the cent
@@ -147,7 +204,8 @@ func sortedKeys[K cmp.Ordered, V any](m map[K]V) []K { return slices.Sorted(maps
 func checkCell() cell { return cell{look: message, formula: "check_message", value: checksHold} }
 
 const (
-	checksHold = "All checks hold"
-	runAgain   = "run parch again"
-	follows    = "the sheet follows"
+	checksHold    = "All checks hold"
+	runAgain      = "run parch again"
+	follows       = "the sheet follows"
+	followsWithin = "the sheet follows, within its curves"
 )

@@ -3,6 +3,7 @@ package workbook
 import (
 	"archive/zip"
 	"bytes"
+	"compress/flate"
 	"errors"
 	"fmt"
 	"io"
@@ -45,6 +46,7 @@ func (p *parts) Close() error {
 		return a < b || a == b && names[i] < names[j]
 	})
 	archive := zip.NewWriter(p.out)
+	archive.RegisterCompressor(zip.Deflate, func(w io.Writer) (io.WriteCloser, error) { return flate.NewWriter(w, flate.BestCompression) })
 	for _, name := range names {
 		part, err := p.patch(name, p.content[name].Bytes())
 		if err != nil {
