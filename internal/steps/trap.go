@@ -332,7 +332,9 @@ func (b *boiling) segment(x float64) error {
 	if err != nil {
 		return err
 	}
+	b.water, b.solvent = (water0+water1)/2, (solvent0+b.solvent)/2 // it warms while it shrinks
 	b.warm(v.TempK)
+	b.water, b.solvent = water1, rest+solventPerWater*water1
 	b.note()
 	return nil
 }

@@ -77,7 +77,7 @@ func randomChanges(rng *rand.Rand, l *layout) []change {
 
 func changesOf(rng *rand.Rand, l *layout) (all []change) {
 	times := func(v, low, high float64) float64 {
-		return significant(v*math.Exp(math.Log(low)+rng.Float64()*math.Log(high/low)), 4)
+		return cutTo(v*math.Exp(math.Log(low)+rng.Float64()*math.Log(high/low)), 4)
 	}
 	num := func(name string, v float64, apply func(j *job.Job, c *catalog.Catalog, s map[string]map[string]routes.Settings)) {
 		all = append(all, change{name: name, value: strconv.FormatFloat(v, 'g', -1, 64), apply: apply})

@@ -146,8 +146,8 @@ func trapBlock() *liveBlock {
 		{"x2", "Water at the end", "mol/mol", "{w2}/{lot.mw}/({w2}/{lot.mw}+(1-{w2})/{lot.ms})"}, {"nw2", "Water at the end", "mol", "IF({w2}<{w1},{rest}*{x2}/(1-{x2}/{xa}),{nw1})"},
 		{"q1", "Heat to the filled pot", "J/mol", lookup("trap_heat", "i1", "f1")}, {"q2", "Heat to the end", "J/mol", lookup("trap_heat", "i2", "f2")},
 		{"l0", "Latent heat, feed", "J/mol", lookup("trap_latent", "i0", "f0")}, {"l1", "Latent heat, filled", "J/mol", lookup("trap_latent", "i1", "f1")},
-		{"ww0", "To warm water, feed", "J/mol", lookup("trap_warm_water", "i0", "f0")}, {"ws0", "To warm solvent, feed", "J/mol", lookup("trap_warm_solvent", "i0", "f0")},
-		{"ws1", "To warm solvent, filled", "J/mol", lookup("trap_warm_solvent", "i1", "f1")},
+		{"ww0", "To warm water, feed", "J/mol", lookup("trap_warm_w", "i0", "f0")}, {"ws0", "To warm solvent, feed", "J/mol", lookup("trap_warm_s", "i0", "f0")},
+		{"ws1", "To warm solvent, filled", "J/mol", lookup("trap_warm_s", "i1", "f1")},
 		{"boil", "Boiling", "s", "({fillmol}*({l0}+{l1})/(1+1)+{n1}*({ws1}-{ws0})+{rest}*({q2}-{q1}))/{lot.net}"},
 		{"reflux", "Reflux", "s", "MAX({boil},{shortest})"}, {"hot", "Hot", "s", "({nw}*{ww0}+{ns}*{ws0})/{lot.net}+{reflux}"},
 		{"aq", "Aqueous layer", "mol", "{aqfill}+({nw1}-{nw2})/{xa}"}, {"drains", "Drainings", "1", "MAX(1," + fmt.Sprintf(ceilLess, "{aq}*{vaq}/{usable}") + ")"},
@@ -164,7 +164,7 @@ func forerunBlock() *liveBlock {
 		"hours": "({setup}+{hot}+{lot.charges}*{shut})" + toHours, "attended": "({setup}+{hot}*{share}+{lot.charges}*{shut})" + toHours,
 		"energy": "{lot.heater}*{hot}" + toKWh, "cooling": "{run}*{boil}", "loss1": "({S}-{potS})" + toLitres, "loss2": "{potS}*{lost}" + toLitres,
 		"waste1":  "{W}-{potW}+{S}-{potS}",
-		"follows": "{lot.stillok}*{inside}*({left}>={heel}*(1-job_tie))*({S}-{potS}<{potS})*({W}-{potW}<={S}-{potS}+{S}*job_tie)",
+		"follows": "{lot.stillok}*{inside}*({left}>={heel}*(1-job_tie))*{worth}",
 	}), columnsOf(chain, stillColumns, []liveColumn{
 		constant("from", "Curve from row", "1"), constant("to", "Curve to row", "1"), constant("heel", "Heel", "1"), constant("driest", "Driest outlet", "kg/kg"), constant("setup", "Set-up", "s"),
 		constant("settle", "At total reflux", "s"), constant("shut", "Shut-down", "s"), constant("cold", "Fed cold", "1"),
@@ -173,11 +173,12 @@ func forerunBlock() *liveBlock {
 		{"i1", "Place at the end", "1", placeIn("forerun_water", "end")}, {"f1", "Share at the end", "1", shareIn("forerun_water", "i1", "end")},
 		{"ln0", "ln left, feed", "1", lookup("forerun_left", "i0", "f0")}, {"ln1", "ln left, end", "1", lookup("forerun_left", "i1", "f1")}, {"left", "Left of the charge", "1", "EXP({ln1}-{ln0})"},
 		{"q0", "Heat to the feed", "J/mol", lookup("forerun_heat", "i0", "f0")}, {"q1", "Heat to the end", "J/mol", lookup("forerun_heat", "i1", "f1")},
-		{"ww", "To warm water", "J/mol", lookup("forerun_warm_water", "i0", "f0")}, {"ws", "To warm solvent", "J/mol", lookup("forerun_warm_solvent", "i0", "f0")},
+		{"ww", "To warm water", "J/mol", lookup("forerun_warm_w", "i0", "f0")}, {"ws", "To warm solvent", "J/mol", lookup("forerun_warm_s", "i0", "f0")},
 		{"x1", "Water at the end", "mol/mol", "{end}/{lot.mw}/({end}/{lot.mw}+(1-{end})/{lot.ms})"},
 		{"potW", "Water in the pot", "kg", "({nw}+{ns})*{left}*{x1}*{lot.mw}"}, {"potS", "Solvent in the pot", "kg", "({nw}+{ns})*{left}*(1-{x1})*{lot.ms}"},
 		{"boil", "Drawing off, all charges", "s", "({nw}+{ns})/EXP({ln0})*({q1}-{q0})/{lot.net}+{lot.charges}*{settle}"},
 		{"hot", "Hot, all charges", "s", "{cold}*({nw}*{ww}+{ns}*{ws})/{lot.net}+{boil}"}, {"lost", "Vapour lost", "1", "{vl}*{boil}/{lot.charges}"},
+		{"worth", "Less than half drawn off, little water", "1", "({S}-{potS}<{potS})*({W}-{potW}<={S}-{potS}+{S}*job_tie)"},
 		{"inside", "On the curve", "1", "({w}<=INDEX(forerun_water,{to})*(1+job_tie))*({end}>=INDEX(forerun_water,{from})*(1-job_tie))"},
 	}))
 }
@@ -187,7 +188,7 @@ var sieveColumns = []liveColumn{
 	constant("from", "Curve from row", "1"), constant("to", "Curve to row", "1"), constant("hold", "Held by the beads", "m3/kg"), constant("fade", "Capacity lost a use", "1"),
 	constant("ovenkg", "Oven takes", "kg"), constant("runkwh", "A run of the oven", "kWh"), constant("runh", "Work of a run", "h"), constant("activated", "Activated before use", "1"), constant("usesrow", "Row of its uses", "1"),
 	constant("sieverow", "Row of its setting", "1"), {"again", "Used again", "1", `(INDEX(input_values,{sieverow})="regenerate")*1`}, {"uses", "Uses of a charge", "1", "IF({again}=1,INDEX(input_values,{usesrow}),1)"},
-	{"cs", "Capacity at the last use", "1", "(1-{fade})^({uses}-1)"}, {"first", "Wet enough for the sieve", "1", "({w}>{goal})*({w}<=INDEX(loading_water,{to}))*({cs}*INDEX(loading_held,{from})<={lot.q0})"},
+	{"q0", "Water on the sieve", "kg/kg", "{lot.q0}"}, {"cs", "Capacity at the last use", "1", "(1-{fade})^({uses}-1)"}, {"first", "Wet enough for the sieve", "1", "({w}>{goal})*({w}<=INDEX(loading_water,{to}))*({cs}*INDEX(loading_held,{from})<={q0})"},
 	{"dry", "No free water", "1", "({w}<=MAX({excess}*{lot.sat},{lot.w}*(1+job_tie*1000)))*1"}, constant("excess", "Free water from, times saturation", "1"),
 	constant("billed", "The bill has an oven", "1"), {"runs", "Oven runs", "1", "IF({again}+{activated}>0,{agent}/{ovenkg},0)"},
 }
@@ -207,7 +208,7 @@ func soakBlock() *liveBlock {
 		constant("att", "Attended", "s"), constant("stirw", "Stirrer", "W"), constant("most", "Largest dose", "kg/m3"), constant("hoursrow", "Row of its hours", "1"), constant("stirrow", "Row of its stirring", "1"),
 		{"h", "Stands", "h", "INDEX(input_values,{hoursrow})"}, {"stir", "Stirred", "1", `(INDEX(input_values,{stirrow})="yes")*1`}, {"t", "Stands", "s", "{h}*60*60"},
 		{"vol", "Volume", "m3", "{S}/{lot.ds}+{W}/{lot.dw}"}, {"r0", "Water in", "kg/kg", "{W}/{S}"},
-		{"kb", "Beads", "m3/(kg s)", "IF({stir}=1,{beads1},{beads0})"}, {"rm", "Mixing resists", "s", "IF({stir}=1,0,{lot.depth}/{mix}/{mixdepth})"},
+		{"kb", "Beads", "m3/(kg s)", "IF({stir}=1,{beads1},{beads0})"}, {"skb", "Beads, times solvent", "m3/s", "{S}*{kb}"}, {"rm", "Mixing resists", "s", "IF({stir}=1,0,{lot.depth}/{mix}/{mixdepth})"},
 		{"em", "Left by mixing", "1", "IFERROR(EXP(-{t}/{rm}),0)"}, {"top", "Equilibrium at most", "kg/kg", "({goal}-{w}*{em})/(1-{em})"},
 	})
 	own = append(own, halvingForDose()...)
@@ -215,35 +216,40 @@ func soakBlock() *liveBlock {
 		{"ka", "Node below", "1", "MAX({from},{df})"}, {"wa", "Node below", "kg/kg", "INDEX(loading_water,{ka})"}, {"wb", "Node above", "kg/kg", "MIN(INDEX(loading_water,MIN({ka}+1,{to})),{top})"},
 		{"qa", "Held at the node", "kg/kg", "{cs}*INDEX(loading_held,{ka})"},
 		{"slope", "Slope of the loading", "1", "({cs}*INDEX(loading_held,MIN({ka}+1,{to}))-{qa})/(INDEX(loading_water,MIN({ka}+1,{to}))-{wa})"},
-		{"feasible", "A dose reaches it", "1", "({df}>={from})*({qa}+{slope}*({wb}-{wa})>{lot.q0})*({wb}>{wa})"},
-		{"ga", "Over, node below", "kg", surplusAt("wa")}, {"gb", "Over, node above", "kg", "-{vol}*({qa}+{slope}*({wb}-{wa})-{lot.q0})"},
-		{"ma", "Equilibrium, first", "kg/kg", "IFERROR({wa}+({wb}-{wa})*{ga}/({ga}-{gb}),{wa})"}, {"gm", "Over, first", "kg", surplusAt("ma")},
-		{"mb", "Equilibrium, second", "kg/kg", "IFERROR({ma}+{gm}*(IF({gm}>0,{wb},{wa})-{ma})/({gm}-IF({gm}>0,{gb},{ga})),{ma})"}, {"gn", "Over, second", "kg", surplusAt("mb")},
-		{"mc", "Equilibrium, third", "kg/kg", "IFERROR({mb}-{gn}*({mb}-{ma})/({gn}-{gm}),{mb})"}, {"go", "Over, third", "kg", surplusAt("mc")},
+		{"feasible", "A dose reaches it", "1", "({df}>={from})*({qa}+{slope}*({wb}-{wa})>{q0})*({wb}>{wa})"},
+		{"sa", "In time, node below", "kg", inTimeAt("wa")}, {"ga", "Over, node below", "kg", surplusAt("sa", "wa")}, {"gb", "Over, node above", "kg", "-{vol}*({qa}+{slope}*({wb}-{wa})-{q0})"},
+		{"ma", "Equilibrium, first", "kg/kg", "IFERROR({wa}+({wb}-{wa})*{ga}/({ga}-{gb}),{wa})"}, {"sm", "In time, first", "kg", inTimeAt("ma")}, {"gm", "Over, first", "kg", surplusAt("sm", "ma")},
+		{"mb", "Equilibrium, second", "kg/kg", "IFERROR({ma}+{gm}*(IF({gm}>0,{wb},{wa})-{ma})/({gm}-IF({gm}>0,{gb},{ga})),{ma})"}, {"sn", "In time, second", "kg", inTimeAt("mb")}, {"gn", "Over, second", "kg", surplusAt("sn", "mb")},
+		{"mc", "Equilibrium, third", "kg/kg", "IFERROR({mb}-{gn}*({mb}-{ma})/({gn}-{gm}),{mb})"}, {"so", "In time, third", "kg", inTimeAt("mc")}, {"go", "Over, third", "kg", surplusAt("so", "mc")},
 		{"md", "Equilibrium for the dose", "kg/kg", "IFERROR({mc}-{go}*({mc}-{mb})/({go}-{gn}),{mc})"},
-		{"exact", "Dose that reaches it", "kg/m3", "IFERROR({S}*({r0}-{md}/(1-{md}))/({qa}+{slope}*({md}-{wa})-{lot.q0})/{vol},{most})"},
+		{"exact", "Dose that reaches it", "kg/m3", "IFERROR({S}*({r0}-{md}/(1-{md}))/({qa}+{slope}*({md}-{wa})-{q0})/{vol},{most})"},
 		{"dose", "Dose", "kg/m3", "IF({feasible}=1,MIN({most},MAX(site_least_dose,{exact})),{most})"},
 		{"meets", "Dosed to reach it", "1", "{feasible}*({exact}>=site_least_dose)*({exact}<={most})"},
-		{"m", "Sieve", "kg", "{dose}*{vol}"}, {"all", "Water to share", "kg", "{S}*{r0}+{m}*{lot.q0}"},
+		{"m", "Sieve", "kg", "{dose}*{vol}"}, {"all", "Water to share", "kg", "{S}*{r0}+{m}*{q0}"},
 	}...)
 	own = append(own, halvingForWater()...)
 	own = append(own, []liveColumn{
 		{"ea", "Node below", "1", "MAX({from},MIN({hf},{to}-1))"}, {"ua", "Node below", "kg/kg", "INDEX(loading_water,{ea})"}, {"ub", "Node above", "kg/kg", "INDEX(loading_water,{ea}+1)"},
 		{"fa", "Water at the node below", "kg", "{S}*{ua}/(1-{ua})+{m}*{cs}*INDEX(loading_held,{ea})"}, {"fb", "Water at the node above", "kg", "{S}*{ub}/(1-{ub})+{m}*{cs}*INDEX(loading_held,{ea}+1)"},
-		{"eq", "Equilibrium", "kg/kg", "{ua}+({ub}-{ua})*({all}-{fa})/({fb}-{fa})"}, {"k", "Rate", "1/s", "1/({rm}+1/({kb}*{dose}))"},
+		{"eq", "Equilibrium", "kg/kg", "{ua}+({ub}-{ua})*({all}-{fa})/({fb}-{fa})"}, {"oncurve", "On the curve", "1", "({fa}<={all}*(1+job_tie))*({all}<={fb}*(1+job_tie))*({t}>0)"}, {"k", "Rate", "1/s", "1/({rm}+1/({kb}*{dose}))"},
 		{"out", "Water out", "kg/kg", "IF({meets}=1,{goal},{eq}+({w}-{eq})*EXP(-{k}*{t}))"}, {"held", "Held by the beads", "kg", "MIN({m}*{hold}*{lot.ds},{S})"},
 	}...)
 	return newLiveBlock("soak", "Soaks", common(with(map[string]string{
 		"Sout": "{S}-{held}", "Wout": "{Sout}*{out}/(1-{out})", "hours": "{h}+{attended}", "attended": "{lot.vessels}*{att}" + toHours,
 		"energy": "{stir}*{lot.vessels}*{stirw}*{h}/1000", "agent": "{m}", "pieces": "{lot.vessels}",
-		"follows": "{first}*{dry}*(({runs}>0)*1={billed})*{lot.vesselok}*({fa}<={all}*(1+job_tie))*({all}<={fb}*(1+job_tie))*({t}>0)",
+		"follows": "{first}*{dry}*(({runs}>0)*1={billed})*{lot.vesselok}*{oncurve}",
 	}, sieveUses)), own)
 }
 
-// surplusAt is by how much the sorbent of the dose that time asks for falls short
-// of the one that the water asks for; they agree at the equilibrium sought.
-func surplusAt(w string) string {
-	return strings.ReplaceAll("IFERROR({S}*({r0}-{x}/(1-{x}))*{kb}*({t}/LN(({w}-{x})/({goal}-{x}))-{rm}),0)-{vol}*({qa}+{slope}*({x}-{wa})-{lot.q0})", "{x}", "{"+w+"}")
+// inTimeAt is the sorbent of the dose that time asks for, times what a kilogram of
+// it would have to hold; surplusAt is by how much that is more than it can hold. They
+// agree at the equilibrium sought.
+func inTimeAt(w string) string {
+	return strings.ReplaceAll("IFERROR({skb}*({r0}-{x}/(1-{x}))*({t}/LN(({w}-{x})/({goal}-{x}))-{rm}),0)", "{x}", "{"+w+"}")
+}
+
+func surplusAt(inTime, w string) string {
+	return fmt.Sprintf("{%s}-{vol}*({qa}+{slope}*({%s}-{wa})-{q0})", inTime, w)
 }
 
 var halves = []string{"a", "b", "c", "d", "e", "f"} // of the nodes of a curve: 2 to that many
@@ -255,9 +261,9 @@ func halvingForDose() (out []liveColumn) {
 	for _, s := range halves {
 		w, held := "try"+s, "d"+s
 		out = append(out,
-			liveColumn{w, "Node tried", "kg/kg", fmt.Sprintf("INDEX(loading_water,%s+search_step_%s)", before, s)},
-			liveColumn{"over" + s, "Over at it", "kg", fmt.Sprintf("IFERROR({S}*({r0}-{%[1]s}/(1-{%[1]s}))*{kb}*({t}/LN(({w}-{%[1]s})/({goal}-{%[1]s}))-{rm}),-1)", w)},
-			liveColumn{held, "Node found", "1", fmt.Sprintf("%[1]s+search_step_%[2]s*({%[3]s}<{top})*({over%[2]s}>{vol}*({cs}*INDEX(loading_held,%[1]s+search_step_%[2]s)-{lot.q0}))", before, s, w)})
+			liveColumn{w, "Node tried", "kg/kg", fmt.Sprintf("INDEX(loading_water,%s+stride_%s)", before, s)},
+			liveColumn{"over" + s, "Over at it", "kg", fmt.Sprintf("IFERROR({skb}*({r0}-{%[1]s}/(1-{%[1]s}))*({t}/LN(({w}-{%[1]s})/({goal}-{%[1]s}))-{rm}),-1)", w)},
+			liveColumn{held, "Node found", "1", fmt.Sprintf("%[1]s+stride_%[2]s*({%[3]s}<{top})*({over%[2]s}>{vol}*({cs}*INDEX(loading_held,%[1]s+stride_%[2]s)-{q0}))", before, s, w)})
 		before = "{" + held + "}"
 	}
 	return out
@@ -270,8 +276,8 @@ func halvingForWater() (out []liveColumn) {
 	for _, s := range halves {
 		w := "share" + s
 		out = append(out,
-			liveColumn{w, "Node tried", "kg/kg", fmt.Sprintf("INDEX(loading_water,%s+search_step_%s)", before, s)},
-			liveColumn{"h" + s, "Node found", "1", fmt.Sprintf("%[1]s+search_step_%[2]s*({S}*{%[3]s}/(1-{%[3]s})+{m}*{cs}*INDEX(loading_held,%[1]s+search_step_%[2]s)<={all}*(1+job_tie))", before, s, w)})
+			liveColumn{w, "Node tried", "kg/kg", fmt.Sprintf("INDEX(loading_water,%s+stride_%s)", before, s)},
+			liveColumn{"h" + s, "Node found", "1", fmt.Sprintf("%[1]s+stride_%[2]s*({S}*{%[3]s}/(1-{%[3]s})+{m}*{cs}*INDEX(loading_held,%[1]s+stride_%[2]s)<={all}*(1+job_tie))", before, s, w)})
 		before = "{h" + s + "}"
 	}
 	return out
@@ -281,8 +287,8 @@ func columnBlock() *liveBlock {
 	own := columnsOf(chain, sieveColumns, []liveColumn{
 		constant("recycle", "First runnings", "1"), constant("pumpw", "Pump", "W"), constant("setup", "Set-up", "s"), constant("share", "Attended share", "1"), constant("hasnarrow", "There is a narrower one", "1"), constant("haswide", "There is a wider one", "1"),
 		{"vol", "Volume", "m3", "{S}/{lot.ds}+{W}/{lot.dw}"},
-		{"bare", "Held at the floor", "kg/kg", "{lot.q0}/{cs}"}, {"i", "Place of the floor", "1", placeIn("loading_held", "bare")},
-		{"floor", "Floor", "kg/kg", "INDEX(loading_water,{i})+({bare}-INDEX(loading_held,{i}))/(INDEX(loading_held,{i}+1)-INDEX(loading_held,{i}))*{gap}"}, {"gap", "To the next node", "kg/kg", "INDEX(loading_water,{i}+1)-INDEX(loading_water,{i})"},
+		{"bare", "Held at the floor", "kg/kg", "{q0}/{cs}"}, {"i", "Place of the floor", "1", placeIn("loading_held", "bare")},
+		{"floor", "Floor", "kg/kg", "INDEX(loading_water,{i})+{fi}*{gap}"}, {"fi", "Share of the floor", "1", "({bare}-INDEX(loading_held,{i}))/(INDEX(loading_held,{i}+1)-INDEX(loading_held,{i}))"}, {"gap", "To the next node", "kg/kg", "INDEX(loading_water,{i}+1)-INDEX(loading_water,{i})"},
 		{"j", "Place of the feed", "1", placeIn("loading_water", "w")},
 		{"fj", "Share of the feed", "1", "({w}-INDEX(loading_water,{j}))/(INDEX(loading_water,{j}+1)-INDEX(loading_water,{j}))"},
 		{"heldin", "Held at the feed", "kg/kg", "{cs}*(" + lookup("loading_held", "j", "fj") + ")"}, {"removed", "To be taken", "kg", "{S}*({W}/{S}-{floor}/(1-{floor}))"},
@@ -292,7 +298,7 @@ func columnBlock() *liveBlock {
 	return newLiveBlock("column", "Columns", common(with(map[string]string{
 		"Sout": "{S}-{held}", "Wout": "{Sout}*{out}/(1-{out})", "hours": "({setup}+{pumps})" + toHours, "attended": "({setup}+{share}*{pumps})" + toHours,
 		"energy": "{pumpw}*{pumps}" + toKWh, "agent": "{agentkg}", "pieces": "1",
-		"follows": "{first}*{dry}*(({runs}>0)*1={billed})*({floor}<{w})*({heldin}>{lot.q0})*({hasnarrow}*{meetsn}=0)*({haswide}*(1-{meets})=0)",
+		"follows": "{first}*{dry}*(({runs}>0)*1={billed})*({floor}<{w})*({heldin}>{q0})*({hasnarrow}*{meetsn}=0)*({haswide}*(1-{meets})=0)",
 	}, sieveUses)), own)
 }
 
@@ -301,7 +307,7 @@ func columnBlock() *liveBlock {
 func bedColumns(n string) []liveColumn {
 	list := []liveColumn{
 		constant("area", "Area", "m2"), constant("rho", "Bed", "kg/m3"), constant("htu", "Transfer unit", "m"), constant("long", "Longest bed", "m"), constant("flow", "Flow", "m3/s"),
-		{"front", "Front", "m/m3", "{removed}/{vol}/({area#}*{rho#}*({heldin}-{lot.q0}))"},
+		{"front", "Front", "m/m3", "{removed}/{vol}/({area#}*{rho#}*({heldin}-{q0}))"},
 		{"unused", "Unused bed", "m", "IFERROR(MAX(0,{htu#}*LN(({w}-{floor})/({goal}-{floor}))),{long#}*1000)"}, {"grow", "Growth", "1", "1-{front#}*{recycle}*{area#}"},
 		{"twice", "Bed for the lot twice", "m", "({front#}+{front#})*{vol}+{unused#}"},
 		{"need", "Bed needed", "m", "IF({grow#}>0,MIN(({front#}*{vol}+{unused#})/{grow#},{twice#}),{twice#})"}, {"len", "Bed", "m", "MIN({need#},{long#})"},
@@ -334,7 +340,7 @@ func reactiveBlock() *liveBlock {
 		constant("ww", "To warm water", "J/mol"), constant("ws", "To warm solvent", "J/mol"), constant("latent", "Latent heat", "J/mol"),
 		{"vol", "Volume", "m3", "{S}/{lot.ds}+{W}/{lot.dw}"}, {"charged", "Agent charged", "kg", "MAX({surplus}*{W}*{need},{least}*{vol})"}, {"bound", "Solvent bound", "kg", "({charged}-{W}*{need})*{binds}"},
 		{"heel", "Heel", "kg", "{heels}*({S}-{bound})"}, {"dist", "Distilling, all charges", "s", "({S}-{bound}-{heel})/{lot.ms}*{latent}/{lot.net}"},
-		{"hot", "Hot, all charges", "s", "({S}/{lot.ms}*{ws}+{W}/{lot.mw}*{ww})/{lot.net}+{reflux}*{lot.charges}+{dist}"},
+		{"warm", "Heat-up, all charges", "s", "({S}/{lot.ms}*{ws}+{W}/{lot.mw}*{ww})/{lot.net}"}, {"hot", "Hot, all charges", "s", "{warm}+{reflux}*{lot.charges}+{dist}"},
 		{"vap", "Vapour lost", "kg", "MIN({S}*{vl}*({reflux}*{lot.charges}+{dist})/{lot.charges},{S}-{bound}-{heel})"}, {"out", "Water out", "kg/kg", "MIN({res},{w})"},
 	}))
 }

@@ -113,7 +113,7 @@ func (l *layout) billRow(g *grid, row int, r *routeModel, line lineModel) {
 	g.put(billPlace, row, count(place-l.lotRows.rows.first+1))
 	g.put(billColumn, row, count(column))
 	g.put(billTimes, row, number(times, "1").shown("General"))
-	if l.carbonOf(r, line) == 0 {
+	if k := l.carbonOf(r, line); k == 0 || math.IsNaN(k) {
 		return
 	}
 	g.put(billFactor, row, finite(l.carbonOf(r, line), "kg CO2e", "0.000"))

@@ -22,10 +22,10 @@ var curveKinds = []curveKind{
 		[]column{{"Water", "kg/kg"}, {"Activity of water", "1"}, {"Held", "kg/kg"}}, []string{"loading_water", "loading_activity", "loading_held"}},
 	{steps.Trap, "Pot under a trap: vapour boiled up and heat for one mole of what stays, from the wettest pot on", column{name: "Receiver"},
 		[]column{{"Water in the pot", "kg/kg"}, {"Vapour boiled up", "mol/mol"}, {"Heat", "J/mol"}, {"ln of what is left", "1"}, {"Water in the vapour", "mol/mol"}, {"Latent heat", "J/mol"}, {"To warm water", "J/mol"}, {"To warm solvent", "J/mol"}},
-		[]string{"trap_water", "trap_vapour_boiled", "trap_heat", "trap_left", "trap_vapour", "trap_latent", "trap_warm_water", "trap_warm_solvent"}},
+		[]string{"trap_water", "trap_vapour_boiled", "trap_heat", "trap_left", "trap_vapour", "trap_latent", "trap_warm_w", "trap_warm_s"}},
 	{steps.Forerun, "Pot of a forerun: what is left and heat for one mole of the wettest pot", column{name: "Stages"},
 		[]column{{"Water in the pot", "kg/kg"}, {"ln of what is left", "1"}, {"Heat", "J/mol"}, {"To warm water", "J/mol"}, {"To warm solvent", "J/mol"}},
-		[]string{"forerun_water", "forerun_left", "forerun_heat", "forerun_warm_water", "forerun_warm_solvent"}},
+		[]string{"forerun_water", "forerun_left", "forerun_heat", "forerun_warm_w", "forerun_warm_s"}},
 }
 
 const curveFirst = 4 // first column of the figures
@@ -49,7 +49,7 @@ func (l *layout) searchSteps(g *grid) {
 	g.put(1, row, text(block, "Strides in which a place in a curve is found"))
 	for i, s := range halves {
 		g.put(curveFirst+i, row, count(routes.CurveNodes>>(i+1)))
-		l.name("search_step_"+s, sheetCurves, curveFirst+i, row)
+		l.name("stride_"+s, sheetCurves, curveFirst+i, row)
 	}
 }
 
@@ -77,7 +77,7 @@ func (l *layout) curveBlock(g *grid, k curveKind) {
 			for i, values := range c.Rows {
 				g.putRow(row, text(plain, lot.Job.Name), curveOf(c), count(i+1))
 				for j, v := range values {
-					g.put(curveFirst+j, row, number(significant(v, curveDigits), k.columns[j].unit).shown("0.0000E+00"))
+					g.put(curveFirst+j, row, number(cutTo(v, curveDigits), k.columns[j].unit).shown("0.0000E+00"))
 				}
 				row++
 			}
@@ -117,10 +117,10 @@ func (l *layout) courseBlock(g *grid) {
 		}
 		for _, s := range r.stages {
 			for _, p := range s.Course {
-				g.putRow(row, text(plain, r.lot.Job.Name), text(plain, r.ID), count(s.no), number(significant(p.Hours, 5), "h").shown(decimals(2)), number(significant(p.Water*mgPerKg, 5), "mg/kg").shown("#,##0.00"),
-					number(significant(p.BoiledKg, 5), "kg").shown(decimals(3)), number(significant(p.DrawnM3*1000, 5), "L").shown(decimals(3)))
+				g.putRow(row, text(plain, r.lot.Job.Name), text(plain, r.ID), count(s.no), number(cutTo(p.Hours, 5), "h").shown(decimals(2)), number(cutTo(p.Water*mgPerKg, 5), "mg/kg").shown("#,##0.00"),
+					number(cutTo(p.BoiledKg, 5), "kg").shown(decimals(3)), number(cutTo(p.DrawnM3*1000, 5), "L").shown(decimals(3)))
 				if p.PotK > 0 {
-					g.put(8, row, number(significant(p.PotK-273.15, 5), "°C").shown("0.0"))
+					g.put(8, row, number(cutTo(p.PotK-273.15, 5), "°C").shown("0.0"))
 				}
 				row++
 			}
@@ -139,7 +139,7 @@ const coursesShown = 3
 // enough to keep the file small.
 const curveDigits = 8
 
-func significant(v float64, digits int) float64 {
+func cutTo(v float64, digits int) float64 {
 	r, err := strconv.ParseFloat(strconv.FormatFloat(v, 'e', digits-1, 64), 64)
 	if err != nil {
 		return v

@@ -181,7 +181,7 @@ func (e *emitter) row(sw *excelize.StreamWriter, g *grid, row int) error {
 			value = clean(s)
 		}
 		if v, ok := value.(float64); ok && c.formula != "" {
-			value = significant(v, storedDigits)
+			value = cutTo(v, storedDigits)
 		}
 		values[i] = excelize.Cell{StyleID: id, Formula: c.formula, Value: value}
 	}

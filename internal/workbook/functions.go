@@ -118,6 +118,8 @@ func (e *evaluator) ofMany(name string, args []any) any {
 			}
 			return roundTo(v, int(d))
 		}, args...)
+	case "SMALL", "LARGE":
+		return e.placed(args[0], e.single(args[1]), name == "LARGE")
 	case "ROWS":
 		if r, ok := args[0].(ref); ok {
 			return float64(r.r2 - r.r1 + 1)
@@ -137,6 +139,33 @@ func (e *evaluator) ofMany(name string, args []any) any {
 		return e.fold("SUM", []any{product})
 	}
 	return e.fold(name, args)
+}
+
+// placed is the number that stands at a place of the sorted numbers of an area.
+func (e *evaluator) placed(area, place any, largest bool) any {
+	r, ok := area.(ref)
+	k, isNumber := toNumber(place)
+	if !ok || !isNumber {
+		return noValue
+	}
+	var all []float64
+	for _, v := range e.block(r).values {
+		if f, bad := v.(fault); bad {
+			return f
+		}
+		if x, ok := v.(float64); ok {
+			all = append(all, x)
+		}
+	}
+	sort.Float64s(all)
+	i := int(k) - 1
+	if largest {
+		i = len(all) - int(k)
+	}
+	if i < 0 || i >= len(all) {
+		return noNumber
+	}
+	return all[i]
 }
 
 // fold runs over all numbers of areas and single values.

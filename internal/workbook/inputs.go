@@ -271,18 +271,18 @@ func (l *layout) stateRow(g *grid, i int, lot *lotModel) {
 	states := rows{l.lotInputs[i].first, l.lotInputs[i].last}
 	f := fmt.Sprintf(`IF(COUNTIF(%s,"%s")+COUNTIF(%s,"%s")>0,"%s","")`,
 		states.column(colState), runAgain, fixed(colState, l.objectiveRow), runAgain, runAgain)
-	name := l.lotName(lot, "run_state")
-	row := g.last() + 1
+	edited := func(r rows) string {
+		return fmt.Sprintf(`SUMPRODUCT((%s<>%s)*(%s="%s"))`, r.column(colValue), r.column(colRun), r.column(colAfter), followsWithin)
+	}
+	name := l.lotName(lot, "edited")
+	row := fact(g, name, "Edited inputs that its closed forms read", whole(edited(states)+"+site_edited", 0), "", "of this lot and of all lots")
+	l.name(name, sheetInputs, colValue, row)
+	name = l.lotName(lot, "run_state")
+	row = g.last() + 1
 	g.putRow(row, text(plain, name), text(words, "Results of this lot"))
 	g.put(colSource, row, text(words, "empty while the results of the program belong to the inputs above"))
 	g.put(colState, row, cell{look: formula, formula: f, value: ""})
 	l.name(name, sheetInputs, colState, row)
-	edited := func(r rows) string {
-		return fmt.Sprintf(`SUMPRODUCT((%s<>%s)*(%s="%s"))`, r.column(colValue), r.column(colRun), r.column(colAfter), followsWithin)
-	}
-	name = l.lotName(lot, "edited")
-	row = fact(g, name, "Edited inputs that its closed forms read", whole(edited(states)+"+site_edited", 0), "", "of this lot and of all lots")
-	l.name(name, sheetInputs, colValue, row)
 }
 
 func (l *layout) siteBlock(g *grid) {

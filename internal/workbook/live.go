@@ -108,7 +108,7 @@ func (b *liveBlock) expand(formula string, row int, lots *liveBlock, lotNo int) 
 			}
 		default:
 			if c := b.column(key); c > 0 {
-				return "$" + at(c, row)
+				return at(c, row)
 			}
 		}
 		failed = fmt.Errorf("block %s: no column %s in %q", b.kind, key, formula)

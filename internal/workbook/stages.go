@@ -211,8 +211,12 @@ var constantNames = map[steps.Kind]map[string]string{
 // valuesOf are the results of a step that only the program can follow, by key.
 func valuesOf(s *stageModel) map[string]float64 {
 	o := s.Outcome
+	out := o.Out.Water()
+	if s.last {
+		out = s.route.Run.WaterOut
+	}
 	return map[string]float64{
-		"S": o.In.SolventKg, "W": o.In.WaterKg, "win": o.In.Water() * mgPerKg, "Sout": o.Out.SolventKg, "Wout": o.Out.WaterKg, "wout": o.Out.Water() * mgPerKg,
+		"S": o.In.SolventKg, "W": o.In.WaterKg, "win": o.In.Water() * mgPerKg, "Sout": o.Out.SolventKg, "Wout": o.Out.WaterKg, "wout": out * mgPerKg,
 		"hours": o.HoursTotal, "attended": o.HoursAttended, "energy": o.EnergyKWh, "cooling": o.CoolingWaterL / 1000, "agent": o.AgentKg, "loss1": o.SolventLostL,
 		"waste1": o.WasteKg, "used": o.AgentKg, "pieces": 1, "follows": 1,
 	}

@@ -87,7 +87,8 @@ func (l *layout) stepBlock(g *grid, all []stepModel) {
 			from("mg/kg", in, "win"), from("mg/kg", out, "wout"), finite(s.Floor*mgPerKg, "mg/kg", decimals(2)),
 			from("h", decimals(2), "hours"), from("h", decimals(2), "attended", "besides"), from("kWh", decimals(2), "energy", "ovenkwh"),
 			from("L", decimals(1), "cooling"), from("kg", decimals(3), "agent"), from("L", decimals(3), "loss1", "loss2", "loss3"),
-			count(live.row - l.lotRows.rows.first + 1), text(words, why(s.Outcome)), l.routeState(s.route),
+			count(live.row - l.lotRows.rows.first + 1), text(words, why(s.Outcome)),
+			{look: formula, formula: fmt.Sprintf("INDEX(%s,$C%d)", area(stepState, l.resultRows.first, l.resultRows.last), row)},
 		} {
 			g.put(5+c, row, x)
 		}

@@ -82,10 +82,12 @@ func layLive(m *model) (*layout, error) {
 // evaluate gives every formula the value that the sheets compute for it.
 func evaluate(grids []*grid, names []definedName) error {
 	for _, g := range grids {
-		for _, row := range g.rows {
+		for r, row := range g.rows {
 			for c := range row {
 				if row[c].formula != "" {
 					row[c].value = nil
+				} else if err := row[c].check(); err != nil {
+					return fmt.Errorf("sheet %s, cell %s: %w", g.name, at(c+1, r+1), err)
 				}
 			}
 		}

@@ -103,7 +103,7 @@ func TestRefusals(t *testing.T) {
 		spoil func(*study.Report)
 		says  string
 	}{
-		"not a number": {func(r *study.Report) { r.Lots[0].Routes[0].Run.EnergyKWh = math.NaN() }, "not a number that a sheet can hold"},
+		"not a number": {func(r *study.Report) { r.Lots[0].Routes[0].Run.WaterOut = math.NaN() }, "not a number that a sheet can hold"},
 		"infinite":     {func(r *study.Report) { r.Lots[0].Job.Water = math.Inf(1) }, "not a number that a sheet can hold"},
 		"no litres":    {func(r *study.Report) { r.Lots[0].Routes[1].Run.LitresDelivered = 0 }, "delivers no solvent"},
 		"no price":     {func(r *study.Report) { delete(r.Book, "sieve-3a") }, "no price for sieve-3a"},
