@@ -10,6 +10,7 @@ var sheetPurposes = [][2]string{
 	{sheetDecision, "one page to sign: the recommended route of each lot, why, and what would change the choice"},
 	{sheetInputs, "lots, targets and acceptance limits; what may be edited and what follows"},
 	{sheetPrices, "every price with its date, source and mark; edit to see the costs follow"},
+	{sheetCurves, "the tables that the closed forms look up; water in each step against time"},
 	{sheetSteps, "what each step does: water, time, energy, amounts, why it stops; balances"},
 	{sheetCosts, "the bill line by line, cost by head, cost per litre, ranking"},
 	{sheetCompare, "one row per route, charts, routes not offered and why, cautions"},
