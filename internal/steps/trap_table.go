@@ -151,4 +151,4 @@ func WithNodes(all []float64, among ...float64) []float64 {
 }
 
 // nodeShare is how close two nodes may lie.
-const nodeShare = 1e-9
+const nodeShare = 1e-4

@@ -116,7 +116,7 @@ func (l *layout) courseBlock(g *grid) {
 			continue
 		}
 		for _, s := range r.stages {
-			for _, p := range s.Course {
+			for _, p := range thinned(s.Course) {
 				g.putRow(row, text(plain, r.lot.Job.Name), text(plain, r.ID), count(s.no), number(cutTo(p.Hours, 5), "h").shown(decimals(2)), number(cutTo(p.Water*mgPerKg, 5), "mg/kg").shown("#,##0.00"),
 					number(cutTo(p.BoiledKg, 5), "kg").shown(decimals(3)), number(cutTo(p.DrawnM3*1000, 5), "L").shown(decimals(3)))
 				if p.PotK > 0 {
@@ -133,11 +133,25 @@ func (l *layout) courseBlock(g *grid) {
 	l.curveColumns = append(l.curveColumns, curveColumn{"", rows{first, row - 1}, 4}, curveColumn{"", rows{first, row - 1}, 5})
 }
 
-const coursesShown = 3
+const coursesShown = 2
+
+// thinned keeps the ends of a course and enough between them to draw it.
+func thinned(all []steps.Point) []steps.Point {
+	if len(all) <= coursePoints {
+		return all
+	}
+	out := make([]steps.Point, coursePoints)
+	for i := range out {
+		out[i] = all[i*(len(all)-1)/(coursePoints-1)]
+	}
+	return out
+}
+
+const coursePoints = 13
 
 // curveDigits are the digits kept of a curve: more than its model is good for, few
 // enough to keep the file small.
-const curveDigits = 8
+const curveDigits = 7
 
 func cutTo(v float64, digits int) float64 {
 	r, err := strconv.ParseFloat(strconv.FormatFloat(v, 'e', digits-1, 64), 64)

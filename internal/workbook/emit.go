@@ -102,7 +102,7 @@ func (w *file) prepare(f *excelize.File) error {
 
 // storedDigits are the digits stored of what a formula gives: any reader that
 // calculates has all of them again.
-const storedDigits = 12
+const storedDigits = 10
 
 // emitter writes grids and keeps the styles that they share.
 type emitter struct {
