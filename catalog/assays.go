@@ -19,6 +19,7 @@ func (s *shelf) readAssays() {
 			DetectionLimit: s.value(f.Need("detection limit"), quantity.WaterContent),
 			Highest:        s.value(f.Need("highest"), quantity.WaterContent),
 			Injections:     int(injections.SI),
+			InjectionsFrom: injections.Origin,
 			Sample:         s.value(f.Need("sample"), quantity.Mass),
 		}
 	}

@@ -1,7 +1,11 @@
 package catalog
 
 import (
+	"fmt"
 	"math"
+	"slices"
+	"strconv"
+	"strings"
 
 	"parch/internal/document"
 	"parch/internal/quantity"
@@ -41,7 +45,12 @@ func (s *shelf) curve(n *document.Node, p property, molarMassKgPerMol float64) C
 	c := Curve{Origin: s.origin(f)}
 	c.Equation = thermo.Equation(f.Need("equation").Text())
 	if c.Equation != "" && !c.Equation.Known() {
-		f.Get("equation").Fail("%q is not an equation known here", c.Equation)
+		var known []string
+		for e := range coefficients {
+			known = append(known, string(e))
+		}
+		slices.Sort(known)
+		f.Get("equation").Fail("%q is not an equation known here; allowed: %s", c.Equation, strings.Join(known, ", "))
 	}
 	readCoefficients(f.Need("coefficients"), &c)
 	c.Unit = f.Need("unit").OneOf(keysOf(p.units)...)
@@ -61,7 +70,11 @@ func readCoefficients(n *document.Node, c *Curve) {
 		return
 	}
 	if len(items) < want[0] || len(items) > want[1] {
-		n.Fail("%s takes %d to %d coefficients, not %d", c.Equation, want[0], want[1], len(items))
+		takes := strconv.Itoa(want[1])
+		if want[0] < want[1] {
+			takes = fmt.Sprintf("%d to %d", want[0], want[1])
+		}
+		n.Fail("%s takes %s coefficients, not %d", c.Equation, takes, len(items))
 		return
 	}
 	for i, item := range items {

@@ -44,7 +44,7 @@ func (s *shelf) readOwnSolvents(n *document.Node) {
 // density, the heat of vaporization and the solubility of water.
 func (s *shelf) ownSolvent(e document.Entry, f document.Fields) *Solvent {
 	v := &Solvent{
-		Key: e.Key, Name: f.Need("name").Text(), CAS: f.Get("cas").Text(), Formula: f.Need("formula").Text(),
+		Key: e.Key, Name: f.Need("name").Text(), CAS: casNumber(f.Get("cas")), Formula: f.Need("formula").Text(),
 		Class: f.Need("class").Text(), Aliases: f.Get("aliases").Texts(), Own: true,
 		BoilingPoint: s.value(f.Need("boiling point"), quantity.Temperature),
 		FlashPoint:   s.optional(f.Get("flash point"), quantity.Temperature),

@@ -69,7 +69,7 @@ func (s *shelf) solvents(roots []*document.Node) []*Solvent {
 // solvent reads a full entry.
 func (s *shelf) solvent(root *document.Node, f document.Fields) *Solvent {
 	v := &Solvent{
-		Key: f.Need("key").Text(), Name: f.Need("name").Text(), CAS: f.Need("cas").Text(),
+		Key: f.Need("key").Text(), Name: f.Need("name").Text(), CAS: casNumber(f.Need("cas")),
 		Formula: f.Need("formula").Text(), Class: f.Need("class").Text(), Aliases: f.Get("aliases").Texts(), Own: s.owning,
 
 		MolarMass:           s.value(f.Need("molar mass"), quantity.MolarMass),

@@ -184,6 +184,7 @@ type Assay struct {
 	DetectionLimit Value // kg/kg
 	Highest        Value // kg/kg, above it the other method is advised
 	Injections     int   // of which the mean is reported
+	InjectionsFrom Origin
 	Sample         Value // kg per injection
 }
 

@@ -31,7 +31,7 @@ func assay(key string, a catalog.Assay) Entry {
 	f.value("repeatability r", &a.Repeatability)
 	f.value("detection limit", &a.DetectionLimit)
 	f.value("advised up to", &a.Highest)
-	f.say("injections", fmt.Sprint(a.Injections), catalog.Origin{})
+	f.say("injections", fmt.Sprint(a.Injections), a.InjectionsFrom)
 	f.value("sample", &a.Sample)
 	return Entry{Key: key, Title: key + " Karl Fischer", Facts: f}
 }
