@@ -27,7 +27,7 @@ func (g *tuning) everywhere() {
 		g.best = trial{score: math.Inf(1)}
 		if i > 0 && kept.spot.at != nil {
 			start.at = slices.Clone(kept.spot.at)
-			g.descend(start, early)
+			g.descend(start, false)
 		} else {
 			g.allAxes(start)
 		}
@@ -41,7 +41,7 @@ func (g *tuning) everywhere() {
 	g.refineValleys(lowest)
 	before := g.best.score
 	if g.allAxes(g.best.spot.clone()); g.hasLate() {
-		g.descend(g.best.spot.clone(), all)
+		g.descend(g.best.spot.clone(), true)
 	}
 	if g.best.score < before {
 		g.refine(0.25 / (coarsePoints - 1))
@@ -82,21 +82,15 @@ func (g *tuning) hasLate() bool {
 	return slices.ContainsFunc(g.axes, func(a axis) bool { return a.late })
 }
 
-// Which axes are walked.
-const (
-	early = false
-	all   = true
-)
-
 // around looks near a spot.
 func (g *tuning) around(s spot) {
-	g.descend(s, early)
+	g.descend(s, false)
 	if !g.found() {
 		return
 	}
 	g.refine(0.25 / (coarsePoints - 1))
 	before := g.best.score
-	if g.descend(g.best.spot.clone(), all); g.best.score < before {
+	if g.descend(g.best.spot.clone(), true); g.best.score < before {
 		g.refine(0.25 / (coarsePoints - 1))
 	}
 }
@@ -181,15 +175,15 @@ func (g *tuning) sweep(s spot) {
 }
 
 // descend moves along the axes while that helps: from neighbour to neighbour, or
-// over all values of a short axis.
-func (g *tuning) descend(s spot, which bool) {
+// over all values of a short axis; along late axes only where asked.
+func (g *tuning) descend(s spot, lateToo bool) {
 	s = s.clone()
 	lowest := g.try(s)
 	for better := true; better; {
 		better = false
 		for i, a := range g.axes {
 			before := lowest
-			if a.late && which == early {
+			if a.late && !lateToo {
 				continue
 			}
 			if a.count <= shortAxis {
