@@ -44,6 +44,7 @@ func read(fsys fs.FS, own []File) (*shelf, error) {
 	s.readSources()
 	s.readDate()
 	s.readPractice()
+	s.readDoubts()
 	s.readSolvents()
 	s.readAgents()
 	s.readMatrix()
@@ -78,6 +79,7 @@ const (
 	cautionsFile  = "cautions.yaml"
 	carriersFile  = "carriers.yaml"
 	diameterFile  = "diameters.yaml"
+	doubtFile     = "doubt.yaml"
 	pairsFile     = "carrier-pairs.csv"
 	ternaryFile   = "ternary.csv"
 	layersFile    = "organic-layers.csv"
@@ -86,7 +88,7 @@ const (
 // list names the files to read, sorted, so that problems come in a fixed order.
 func list(fsys fs.FS) ([]string, error) {
 	names := []string{
-		agentsFile, apparatusFile, assaysFile, carriersFile, cautionsFile, dateFile, diameterFile, emissionsFile, historiesFile,
+		agentsFile, apparatusFile, assaysFile, carriersFile, cautionsFile, dateFile, diameterFile, doubtFile, emissionsFile, historiesFile,
 		matrixFile, practiceFile, pricesFile, sourcesFile,
 	}
 	solvents, err := fs.Glob(fsys, "solvents/*.yaml")

@@ -16,7 +16,7 @@ type File struct {
 // ownKinds are what an own file may hold. Each has the format of the file of the
 // catalog with that name; solvents stand by key.
 var ownKinds = []string{
-	"sources", "solvents", "agents", "matrix", "histories", "apparatus", "prices", "practice", "emissions", "cautions",
+	"sources", "solvents", "agents", "matrix", "histories", "apparatus", "prices", "practice", "doubt", "emissions", "cautions",
 }
 
 // LoadWith returns the built-in catalog with the user's own files laid over it,

@@ -167,6 +167,7 @@ type Catalog struct {
 	Apparatus map[string]*Apparatus
 	Prices    map[string]Price
 	Practice  Practice
+	Doubts    map[string]Value // factors within which nine cases in ten lie, by key
 	Emissions map[string]Value // kg CO2e per kg by "making/KEY" and "burning/KEY"; "electricity" per kWh
 	Assays    map[string]Assay // "coulometric", "volumetric"
 	Cautions  []Caution

@@ -43,6 +43,7 @@ func Of(c *catalog.Catalog) []Kind {
 		{"carriers", "solvents that may carry water out of another", each(c.Carriers, carrier)},
 		{"cautions", "warnings and where they apply", cautions(c)},
 		{"diameters", "sizes of molecules", each(c.Diameters, diameter)},
+		{"doubt", "how far off may be what is not known exactly, as factors", each(c.Doubts, practice)},
 		{"emissions", "CO2 equivalents of making, burning and electricity", each(c.Emissions, emission)},
 		{"histories", "how a sieve was activated, and the water it still holds", histories(c)},
 		{"layers", "water in the organic layer of alcohol, carrier and water", paired(c.Layers, layer)},

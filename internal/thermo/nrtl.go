@@ -10,6 +10,23 @@ import "math"
 type NRTL struct {
 	N           int
 	A, B, Alpha [MaxComponents][MaxComponents]float64
+	Shift       Shift // of a pair, from what was fitted
+}
+
+// Shift moves the activity coefficients of a pair off the fitted ones by a
+// one-parameter Margules term, which keeps to the Gibbs-Duhem equation:
+//
+//	ln gamma_w += s(T) x_s^2,  ln gamma_s += s(T) x_w^2
+//	s(T) = Ln25 + LnTrend (1/298.15 K - 1/T)/(1/298.15 K - 1/373.15 K)
+//
+// Ln25 is the logarithm of the factor on water at infinite dilution at 25 °C,
+// LnTrend what comes to it at 100 °C. The zero Shift changes nothing.
+type Shift struct{ Ln25, LnTrend float64 }
+
+// At is s(T).
+func (s Shift) At(tK float64) float64 {
+	const span = 1/298.15 - 1/373.15
+	return s.Ln25 + s.LnTrend*(1/298.15-1/tK)/span
 }
 
 // MaxComponents is water, a solvent and a carrier.
@@ -71,5 +88,9 @@ func lnGamma(n int, tau, g *square, x *Fractions) (ln Fractions) {
 // water mole fraction xWater.
 func (m *NRTL) Pair(xWater, tK float64) (lnWater, lnSolvent float64) {
 	lg := m.LnGamma([MaxComponents]float64{xWater, 1 - xWater}, tK)
-	return lg[0], lg[1]
+	if m.Shift == (Shift{}) {
+		return lg[0], lg[1]
+	}
+	s := m.Shift.At(tK)
+	return lg[0] + s*(1-xWater)*(1-xWater), lg[1] + s*xWater*xWater
 }
