@@ -22,11 +22,12 @@ const (
 	DoubtQuoted   = "price-quoted"
 	DoubtYear     = "price-year"
 	DoubtListed   = "price-indicative"
+	DoubtReading  = "water-reading"
 )
 
 var doubtKeys = []string{
 	DoubtPairA, DoubtPairB, DoubtPairC, DoubtPairD, DoubtTrend, DoubtSoak, DoubtStirred, DoubtColumn, DoubtResidual,
-	DoubtSalt, DoubtReactive, DoubtCarrier, DoubtQuoted, DoubtYear, DoubtListed,
+	DoubtSalt, DoubtReactive, DoubtCarrier, DoubtQuoted, DoubtYear, DoubtListed, DoubtReading,
 }
 
 // Bounds of a factor of doubt: one within rounding of 1 has no spread.

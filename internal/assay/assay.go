@@ -20,6 +20,11 @@ type Method struct {
 // (ISO 5725-6).
 const coverage = 2.77
 
+// Deviation is the standard deviation of the mean of the injections, kg/kg.
+func (m Method) Deviation() float64 {
+	return m.Repeatability / coverage / math.Sqrt(float64(m.Injections))
+}
+
 // Limit is what may be accepted.
 type Limit struct {
 	Uncertainty float64 // U of the mean, coverage factor 2, kg/kg
@@ -34,7 +39,7 @@ type Limit struct {
 // (JCGM 106:2012, guarded acceptance). Where the accepted content would lie
 // below the detection limit, the target cannot be shown.
 func Accept(target float64, m Method) Limit {
-	u := 2 * m.Repeatability / coverage / math.Sqrt(float64(m.Injections))
+	u := 2 * m.Deviation()
 	l := Limit{Uncertainty: u, AcceptAt: target - u}
 	if l.AcceptAt < m.DetectionLimit {
 		l.CannotShow = fmt.Sprintf("cannot be shown: %s less the uncertainty of %s (%s Karl Fischer, mean of %d) is below the detection limit of %s",

@@ -131,13 +131,21 @@ type Lot struct {
 	NeededWithinS   float64 // 0 where there is no limit
 	WeeklyM3        float64 // what the apparatus must be able to dry in a week; 0 where not given
 	Peroxide        *Peroxide
-	HeaterW         float64 // 0: the still's own
-	SieveHistory    string  // key of catalog.History, or ""
-	SieveHistoryK   float64 // temperature where given as one, else 0
-	ResidualLoading float64 // kg/kg, from the history
-	VesselHeightM   float64 // 0: from the vessel's charge
+	HeaterW         float64    // 0: the still's own
+	SieveHistory    string     // key of catalog.History, or ""
+	SieveHistoryK   float64    // temperature where given as one, else 0
+	ResidualLoading float64    // kg/kg, from the history
+	WaterBand       *WaterBand // of Water; nil where one reading is given
+	VesselHeightM   float64    // 0: from the vessel's charge
 	Reclaimed       bool
 	Line            int
+}
+
+// WaterBand is what the dissolved water of a lot may be, kg/kg: nine lots in ten
+// lie in it, lognormal on either side of Lot.Water, or anything in it alike.
+type WaterBand struct {
+	Low, High float64
+	Uniform   bool
 }
 
 // Default is a value that the job left to the catalog.

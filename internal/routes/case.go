@@ -28,6 +28,8 @@ type Case struct {
 
 	site  *equilibria // the same for all lots of the solvent
 	known map[stepKey]result
+	drawn *Drawn // nil: everything as it was planned
+	plan  *Run   // whose doses are weighed out; nil: doses follow from the goal
 }
 
 // NewCase prepares a lot.

@@ -27,6 +27,7 @@ func (c *Case) salt(a *catalog.Agent) steps.SaltAgent {
 	if other, ok := a.Claim.Except[c.Solvent.Key]; ok {
 		s.ShareRemoved = other.SI
 	}
+	s.ShareRemoved = c.shareRemoved(s.ShareRemoved)
 	if a.UselessAbove != nil {
 		s.UselessAboveK = a.UselessAbove.SI
 	}

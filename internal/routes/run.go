@@ -19,10 +19,10 @@ const (
 // Run carries out the route with the given settings. It is an error if the
 // physics refuses a step; a route that misses its target is not.
 func (c *Case) Run(r Route, s Settings) (Run, error) {
-	return c.RunTo(r, s, c.Goal())
+	return c.RunTo(r, s, c.aim(s))
 }
 
-// RunTo is Run with another goal (kg/kg) for the last step than the lot's own.
+// RunTo is Run with a goal (kg/kg) for the last step of its own.
 func (c *Case) RunTo(r Route, s Settings, last float64) (Run, error) {
 	run := Run{Route: r, Settings: s, AgentKg: map[string]float64{}}
 	lot := c.Feed
@@ -33,7 +33,7 @@ func (c *Case) RunTo(r Route, s Settings, last float64) (Run, error) {
 			goal = s.HandOverMgPerKg[i] * 1e-6
 		}
 		choice := s.at(r, i)
-		o, err := c.remembered(stage, lot, goal, i == len(r)-1, choice)
+		o, err := c.carry(i, stage, lot, goal, i == len(r)-1, choice)
 		if err == nil {
 			err = nothingKept(o)
 		}

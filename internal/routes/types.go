@@ -44,6 +44,9 @@ func (r Route) count(kinds ...steps.Kind) int {
 	return n
 }
 
+// leastAim is the driest that a step is sized for, mg/kg.
+const leastAim = 1e-3
+
 // longestSoakHours is a year.
 const longestSoakHours = 366 * 24
 
@@ -86,13 +89,14 @@ func (s Settings) at(r Route, i int) (c choice) {
 
 // Settings are the free choices of a route. Doses follow from them.
 type Settings struct {
-	HandOverMgPerKg []float64 `json:"hand_over_mg_per_kg"`  // water after each stage but the last
-	SoakHours       []float64 `json:"soak_hours,omitempty"` // one for each soak
-	Stages          []int     `json:"stages,omitempty"`     // of the column of each forerun; 0: a simple still
-	Stirred         []bool    `json:"stirred,omitempty"`    // one for each soak
-	Sieve           []string  `json:"sieve,omitempty"`      // "regenerate" or "discard", one for each soak or column
-	Receiver        []string  `json:"receiver,omitempty"`   // of each trap: key of the apparatus
-	ReceiverC       []float64 `json:"receiver_c,omitempty"` // of each trap: temperature, °C
+	HandOverMgPerKg []float64 `json:"hand_over_mg_per_kg"`     // water after each stage but the last
+	SoakHours       []float64 `json:"soak_hours,omitempty"`    // one for each soak
+	Stages          []int     `json:"stages,omitempty"`        // of the column of each forerun; 0: a simple still
+	Stirred         []bool    `json:"stirred,omitempty"`       // one for each soak
+	Sieve           []string  `json:"sieve,omitempty"`         // "regenerate" or "discard", one for each soak or column
+	Receiver        []string  `json:"receiver,omitempty"`      // of each trap: key of the apparatus
+	ReceiverC       []float64 `json:"receiver_c,omitempty"`    // of each trap: temperature, °C
+	AimMgPerKg      float64   `json:"aim_mg_per_kg,omitempty"` // the last step is sized for it; 0: for the acceptance limit
 
 	// Packs that set the prices of the route, by item, where there are several:
 	// chosen by the need of all lots, not tuned for the route.
@@ -117,6 +121,9 @@ func (s Settings) Fit(r Route) error {
 	}
 	if traps := r.count(steps.Trap); len(s.Receiver) > traps || len(s.ReceiverC) > traps {
 		return fmt.Errorf("%s: %w: %d receivers, %d receiver temperatures for %d traps", r.ID(), ErrSettings, len(s.Receiver), len(s.ReceiverC), traps)
+	}
+	if s.AimMgPerKg != 0 && !(s.AimMgPerKg >= leastAim && s.AimMgPerKg < 1e6) {
+		return fmt.Errorf("%s: %w: an aim of %g mg/kg; %g to 1000000 are allowed, or 0 for the acceptance limit", r.ID(), ErrSettings, s.AimMgPerKg, leastAim)
 	}
 	for _, h := range s.SoakHours {
 		if !(h > 0 && h <= longestSoakHours) {

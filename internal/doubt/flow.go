@@ -1,0 +1,223 @@
+package doubt
+
+import (
+	"fmt"
+	"math"
+
+	"parch/internal/routes"
+	"parch/internal/steps"
+)
+
+const reference = 298.15 // K, at which floors of reactive agents are stated
+
+// flow is a route on its way through all draws at once.
+type flow struct {
+	lot   *Lot
+	run   *routes.Run
+	water []float64 // kg/kg, after the stages so far; +Inf where a draw has failed
+	kg    []float64 // solvent
+	turns []turn    // what each stage did
+}
+
+// turn is what a stage did in each draw. A nil series is as planned.
+type turn struct {
+	hours, attended   []float64 // h
+	energyKWh, coolM3 []float64
+	lostKg, wasteKg   map[string][]float64 // by cause, by what
+}
+
+// start is the lot as delivered.
+func (l *Lot) start(run *routes.Run) *flow {
+	f := &flow{lot: l, run: run, water: make([]float64, l.n), kg: make([]float64, l.n)}
+	for i, w := range l.column(l.water()) {
+		feed := l.Case.FeedOf(w)
+		f.water[i], f.kg[i] = feed.Water(), feed.SolventKg
+	}
+	return f
+}
+
+// through carries a run through all its stages. Without accounts only the water
+// counts.
+func (l *Lot) through(run *routes.Run, accounts bool) (*flow, error) {
+	f := l.start(run)
+	for place := range run.Route {
+		t, err := f.stage(place, accounts)
+		if err != nil {
+			return nil, fmt.Errorf("%s: %w", run.Route[place].Kind, err)
+		}
+		f.turns = append(f.turns, t)
+	}
+	return f, l.err
+}
+
+func (f *flow) stage(place int, accounts bool) (turn, error) {
+	switch f.run.Route[place].Kind {
+	case steps.Soak:
+		return f.soak(place)
+	case steps.Column:
+		return f.column(place)
+	case steps.Salt:
+		return f.salt(place)
+	case steps.Reactive:
+		return f.reactive(place)
+	case steps.Buy:
+		o := &f.run.Outcomes[place]
+		for i := range f.water {
+			f.water[i], f.kg[i] = o.Out.Water(), o.Out.SolventKg
+		}
+		return f.busy(place, "buy-attended"), nil
+	case steps.Trap, steps.Forerun, steps.Settle:
+		return f.boil(place, accounts)
+	}
+	return f.asPlanned(place), nil
+}
+
+// dry sets the water of every draw that has not failed yet; not ok fails one.
+func (f *flow) dry(leave func(i int, a *steps.Aside) (water float64, ok bool)) {
+	for i := range f.water {
+		if math.IsInf(f.water[i], 1) {
+			continue
+		}
+		a := f.lot.asides[i]
+		water, ok := leave(i, &a)
+		if !ok || !(water > 0 && water < 1) || !(f.kg[i] > 0) {
+			water = math.Inf(1)
+		}
+		f.water[i] = water
+	}
+}
+
+// busy is a stage whose attended time is that of one operating fact, times what
+// was planned.
+func (f *flow) busy(place int, fact string) turn {
+	o := &f.run.Outcomes[place]
+	planned := f.lot.Case.Catalog.Practice[fact].SI
+	own := f.own(place)
+	t := turn{hours: make([]float64, f.lot.n), attended: make([]float64, f.lot.n)}
+	for i, now := range f.lot.practice(fact) {
+		t.attended[i] = own * now / planned
+		t.hours[i] = o.HoursTotal + t.attended[i] - own
+	}
+	return t
+}
+
+// own is the attended time of a stage itself: the first line of its labour.
+func (f *flow) own(place int) float64 {
+	for _, u := range f.run.Uses {
+		if u.Stage == place+1 && u.Head == steps.Labour && u.Item == "technician" {
+			return u.Quantity
+		}
+	}
+	return 0
+}
+
+// lose takes from the solvent what the plan loses at a stage.
+func (f *flow) lose(place int) {
+	o := &f.run.Outcomes[place]
+	lost := o.In.SolventKg - o.Out.SolventKg
+	for i := range f.kg {
+		f.kg[i] = math.Max(1e-9, f.kg[i]-lost)
+	}
+}
+
+func (f *flow) soak(place int) (turn, error) {
+	quick, err := f.lot.Case.QuickSoak(f.run, place)
+	if err != nil {
+		return turn{}, err
+	}
+	rate := f.lot.stillRateOr(f.run.Settings.StirredAt(f.run.Route, place))
+	loading, residual := f.lot.loading(f.run.Route[place].Agent), f.lot.column(f.lot.residual())
+	f.dry(func(i int, a *steps.Aside) (float64, bool) {
+		a.Loading, a.ResidualKgPerKg, a.Rate = loading[i], residual[i], rate[i]
+		return quick.Water(f.water[i], f.kg[i], a), true
+	})
+	f.lose(place)
+	return f.busy(place, "soak-attended"), nil
+}
+
+func (l *Lot) stillRateOr(stirred bool) []float64 {
+	if stirred {
+		return l.stirredRate()
+	}
+	return l.stillRate()
+}
+
+func (f *flow) column(place int) (turn, error) {
+	quick, err := f.lot.Case.QuickColumn(f.run, place)
+	if err != nil {
+		return turn{}, err
+	}
+	loading, residual, rate := f.lot.loading(f.run.Route[place].Agent), f.lot.column(f.lot.residual()), f.lot.columnRate()
+	f.dry(func(i int, a *steps.Aside) (float64, bool) {
+		a.Loading, a.ResidualKgPerKg, a.Rate = loading[i], residual[i], rate[i]
+		return quick.Water(f.water[i], f.kg[i], a)
+	})
+	f.lose(place)
+	return turn{}, nil
+}
+
+func (f *flow) salt(place int) (turn, error) {
+	quick, err := f.lot.Case.QuickSalt(f.run, place, f.lot.solubilities(f.lot.Case.Job.Site.RoomK))
+	if err != nil {
+		return turn{}, err
+	}
+	o := &f.run.Outcomes[place]
+	t := f.busy(place, "salt-attended")
+	held, cake := make([]float64, f.lot.n), make([]float64, f.lot.n)
+	left := f.lot.saltLeft()
+	f.dry(func(i int, a *steps.Aside) (float64, bool) {
+		a.Left = left[i]
+		r := quick.Run(f.water[i], f.kg[i], a)
+		f.kg[i], held[i], cake[i] = r.SolventKg, r.HeldKg, r.CakeKg
+		return r.Water, true
+	})
+	t.lostKg = map[string][]float64{o.Losses[0].Cause: held}
+	t.wasteKg = map[string][]float64{o.Discards[0].What: cake}
+	return t, nil
+}
+
+func (f *flow) reactive(place int) (turn, error) {
+	quick := f.lot.Case.QuickReactive(f.run, place, f.lot.solubilities(reference))
+	left := f.lot.reactiveLeft(f.run.Route[place].Agent)
+	f.dry(func(i int, a *steps.Aside) (float64, bool) {
+		a.Left = left[i]
+		return quick.Water(f.water[i], a)
+	})
+	f.lose(place)
+	return f.distilled(place), nil
+}
+
+// distilled is the heating of a reactive step. Heat-up and distillation go with the
+// share of the heat, the reflux does not.
+func (f *flow) distilled(place int) turn {
+	o := &f.run.Outcomes[place]
+	l, practice := f.lot, f.lot.Case.Catalog.Practice
+	charges := o.Figure("charges")
+	heat, reflux := charges*(o.Figure("heat-up, each charge")+o.Figure("distillation, each charge")), charges*o.Figure("reflux, each charge")
+	heated0 := heat + reflux
+	share, attended, setUp, spent := l.practice("heat-share"), l.practice("trap-attended-share"), l.practice("reactive-attended"), l.practice("reactive-spent")
+	own0, cool0 := f.own(place), o.CoolingWaterL*1e-3
+	boil0 := reflux + charges*o.Figure("distillation, each charge")
+	t := turn{hours: make([]float64, l.n), attended: make([]float64, l.n), energyKWh: make([]float64, l.n), coolM3: make([]float64, l.n)}
+	for i := range t.hours {
+		faster := practice["heat-share"].SI / share[i]
+		heated := heat*faster + reflux
+		t.attended[i] = own0 + attended[i]*heated - practice["trap-attended-share"].SI*heated0 + charges*(setUp[i]-practice["reactive-attended"].SI)/3600
+		t.hours[i] = o.HoursTotal + heated - heated0 + charges*(setUp[i]-practice["reactive-attended"].SI)/3600 + (spent[i]-practice["reactive-spent"].SI)/3600
+		t.energyKWh[i] = f.ownEnergy(place+1) * heated / heated0
+		t.coolM3[i] = cool0 * (reflux + charges*o.Figure("distillation, each charge")*faster) / boil0
+	}
+	return t
+}
+
+// asPlanned is a stage that is not followed through the draws: it leaves what was
+// planned, within the band of a carrier distillation.
+func (f *flow) asPlanned(place int) turn {
+	o := &f.run.Outcomes[place]
+	off := f.lot.column(f.lot.factor("carrier-outlet", "water that "+string(o.Kind)+" leaves"))
+	for i := range f.water {
+		f.water[i] = math.Min(0.5, o.Out.Water()*off[i])
+	}
+	f.lose(place)
+	return turn{}
+}

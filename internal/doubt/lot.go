@@ -1,0 +1,85 @@
+// Package doubt takes the plans for a lot through draws of all that is not known
+// exactly: the lot's water, the models, the sieve, rates, hours of work, prices.
+// Settings, doses and charges stay as they are planned.
+package doubt
+
+import (
+	"fmt"
+	"math"
+	"slices"
+
+	"parch/internal/costs"
+	"parch/internal/routes"
+	"parch/internal/spread"
+	"parch/internal/steps"
+	"parch/internal/thermo"
+)
+
+// Lot is a lot with the draws that all its routes share.
+type Lot struct {
+	Case *routes.Case
+	Book costs.Book
+	Site *costs.Arrangement // nil: uses are paid for as they come
+	n    int
+	seed uint64
+
+	inputs  []spread.Input
+	columns map[string][]float64 // by name of the input
+	asides  []steps.Aside        // shifts only
+	nodes   *nodes
+	boiled  map[string]*surface
+	holds   map[float64]*steps.Solubilities // by temperature
+	err     error
+}
+
+// New prepares n draws for a lot. The same seed gives the same draws.
+func New(k *routes.Case, book costs.Book, site *costs.Arrangement, n int, seed uint64) (*Lot, error) {
+	if n < 1 || n > spread.MaxDraws {
+		return nil, fmt.Errorf("%d draws: 1 to %d are allowed", n, spread.MaxDraws)
+	}
+	l := &Lot{Case: k, Book: book, Site: site, n: n, seed: seed, columns: map[string][]float64{}, boiled: map[string]*surface{}, holds: map[float64]*steps.Solubilities{}}
+	pair, trend := l.column(l.pair()), l.column(l.trend())
+	l.asides = make([]steps.Aside, n)
+	for i := range l.asides {
+		l.asides[i].Shift = thermo.Shift{Ln25: math.Log(pair[i]), LnTrend: math.Log(trend[i])}
+	}
+	return l, l.err
+}
+
+// Draws is their number.
+func (l *Lot) Draws() int { return l.n }
+
+// Inputs are the uncertain inputs that have been drawn so far.
+func (l *Lot) Inputs() []spread.Input { return l.inputs }
+
+// column is the draws of an input, made when it is first asked for: they depend on
+// its name and the seed alone.
+func (l *Lot) column(in spread.Input) []float64 {
+	if known, ok := l.columns[in.Name]; ok {
+		return known
+	}
+	d, err := spread.Draw([]spread.Input{in}, l.n, l.seed)
+	if err != nil {
+		if l.err == nil {
+			l.err = err
+		}
+		return slices.Repeat([]float64{in.Median}, l.n)
+	}
+	l.inputs = append(l.inputs, in)
+	l.columns[in.Name] = d.Column(0)
+	return l.columns[in.Name]
+}
+
+// solubilities over the shifts of the draws, worked out once.
+func (l *Lot) solubilities(tK float64) *steps.Solubilities {
+	if s, ok := l.holds[tK]; ok {
+		return s
+	}
+	lo, hi := math.Inf(1), math.Inf(-1)
+	for _, a := range l.asides {
+		shift := a.Shift.At(tK)
+		lo, hi = math.Min(lo, shift), math.Max(hi, shift)
+	}
+	l.holds[tK] = steps.NewSolubilities(l.Case.Mixture, tK, lo, hi)
+	return l.holds[tK]
+}

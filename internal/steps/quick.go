@@ -1,0 +1,202 @@
+package steps
+
+import (
+	"math"
+
+	"parch/internal/thermo"
+)
+
+// The quick forms below give what the steps themselves give of a lot whose dose is
+// weighed out, without their accounts, for thousands of draws of what is not known
+// exactly. Tests hold them to the steps.
+
+// Aside is how far a draw is from what a quick form was made for.
+type Aside struct {
+	Shift           thermo.Shift // of the pair's activity model
+	Loading         float64      // factor on the uptake of a sorbent
+	ResidualKgPerKg float64      // on it
+	Rate            float64      // factor on the rate of a soak, on the diffusion of a column
+	Left            float64      // factor on the share that a salt, on the water that a reactive agent leaves
+}
+
+// quickSorption is a sorbent in a solvent at one temperature. Its isotherm is held
+// as a table of ln q against ln p.
+type quickSorption struct {
+	pair             thermo.Isothermal
+	tempK, lnPsat    float64
+	share            float64
+	lnLowest, lnStep float64
+	lnLoading        []float64
+}
+
+const quickPoints = 600
+
+func newQuickSorption(s *sorption) *quickSorption {
+	q := &quickSorption{pair: s.m.At(s.tempK), tempK: s.tempK, lnPsat: math.Log(s.psatWater), share: s.sorbent.CapacityShare * orOne(s.sorbent.PoreShare)}
+	const decades = 14
+	q.lnLowest = q.lnPsat - decades*math.Ln10
+	q.lnStep = decades * math.Ln10 / (quickPoints - 1)
+	for i := range quickPoints {
+		q.lnLoading = append(q.lnLoading, math.Log(s.sorbent.Loading(math.Exp(q.lnLowest+q.lnStep*float64(i)), s.tempK)))
+	}
+	return q
+}
+
+// ln of the uptake at ln p, and its slope. Below the table Henry's law holds.
+func (q *quickSorption) lnLoadingAt(lnP float64) (lnQ, slope float64) {
+	at := (lnP - q.lnLowest) / q.lnStep
+	i := int(math.Max(0, math.Min(at, quickPoints-2)))
+	slope = (q.lnLoading[i+1] - q.lnLoading[i]) / q.lnStep
+	return q.lnLoading[i] + slope*q.lnStep*(at-float64(i)), slope
+}
+
+// lnUptake of a solution of ratio kg of water per kg of solvent.
+func (q *quickSorption) lnUptake(lnRatio, shift float64) (lnQ, slope float64) {
+	lnA, perRatio := q.pair.LnActivity(lnRatio, shift)
+	if lnA > 0 {
+		lnA, perRatio = 0, 0
+	}
+	lnQ, slope = q.lnLoadingAt(lnA + q.lnPsat)
+	return lnQ + math.Log(q.share), slope * perRatio
+}
+
+// balance solves ln(load q(r)) = ln(take(r)) for ln r below lnHighest, where take
+// is what is left for the sorbent at r:
+//
+//	take = (S (r_0 - r) + m q_0)/m
+//
+// ok is false where the sorbent is wetter than the solution.
+func (q *quickSorption) balance(perSorbent, ratio0 float64, a *Aside, shift float64) (ratio float64, ok bool) {
+	lnHighest := math.Log(ratio0)
+	lnLoad := math.Log(a.Loading)
+	gap := func(v float64) (f, slope float64) {
+		lnQ, d := q.lnUptake(v, shift)
+		r := math.Exp(v)
+		take := perSorbent*(ratio0-r) + a.ResidualKgPerKg
+		return lnLoad + lnQ - math.Log(take), d + perSorbent*r/take
+	}
+	if f, _ := gap(lnHighest); f < 0 {
+		return ratio0, false
+	}
+	lo, hi := math.Log(leastWater), lnHighest
+	v := lnHighest - 3
+	for range 80 {
+		f, slope := gap(v)
+		if f > 0 {
+			hi = v
+		} else {
+			lo = v
+		}
+		next := v - f/slope
+		if !(next > lo && next < hi) {
+			next = (lo + hi) / 2
+		}
+		if math.Abs(next-v) < 1e-9 {
+			return math.Exp(next), true
+		}
+		v = next
+	}
+	return math.Exp(v), true
+}
+
+// QuickSoak is a soak over weighed beads.
+type QuickSoak struct {
+	sorption *quickSorption
+	doseKg   float64
+	rate     float64 // K as planned, 1/s
+	timeS    float64
+	made     float64 // kg/kg, water that the solvent makes
+}
+
+// NewQuickSoak prepares a soak of doseKg for timeS, of lots about as large as feed.
+func NewQuickSoak(m *thermo.Mixture, feed Lot, doseKg, timeS float64, sorbent Sorbent, rig SoakRig) (*QuickSoak, error) {
+	feed.SolventKg, feed.CarrierKg = feed.SolventKg+feed.CarrierKg, 0
+	b, err := newBath(m, feed, sorbent, rig)
+	if err != nil {
+		return nil, err
+	}
+	dose := doseKg / b.volumeM3
+	return &QuickSoak{newQuickSorption(&b.sorption), doseKg, b.rate(dose), timeS, b.made(dose, timeS)}, nil
+}
+
+// Water is what the soak leaves of a lot with solventKg and water (kg/kg).
+func (s *QuickSoak) Water(water, solventKg float64, a *Aside) float64 {
+	if s.doseKg == 0 {
+		return water
+	}
+	ratio, ok := s.sorption.balance(solventKg/s.doseKg, water/(1-water), a, a.Shift.At(s.sorption.tempK))
+	if !ok {
+		return water
+	}
+	eq := ratio / (1 + ratio)
+	return eq + (water-eq)*math.Exp(-s.rate*a.Rate*s.timeS) + s.made
+}
+
+// QuickColumn is a column over the bed that was planned.
+type QuickColumn struct {
+	sorption *quickSorption
+	bed      bed
+	bedKg    float64
+}
+
+// NewQuickColumn prepares a bed for lots about as large as feed.
+func NewQuickColumn(m *thermo.Mixture, feed Lot, bedKg float64, sorbent Sorbent, rig ColumnRig) (*QuickColumn, error) {
+	feed.SolventKg, feed.CarrierKg = feed.SolventKg+feed.CarrierKg, 0
+	b, err := newBed(m, feed, sorbent, rig)
+	if err != nil {
+		return nil, err
+	}
+	return &QuickColumn{newQuickSorption(&b.sorption), *b, bedKg}, nil
+}
+
+// Water is the mean of what leaves the column, kg/kg. ok is false where the bed is
+// wetter than the lot.
+func (c *QuickColumn) Water(water, solventKg float64, a *Aside) (out float64, ok bool) {
+	q, b := c.sorption, c.bed
+	shift := a.Shift.At(q.tempK)
+	b.feed.SolventKg, b.feed.WaterKg = solventKg, solventKg*water/(1-water)
+	lnFed, _ := q.lnUptake(math.Log(water/(1-water)), shift)
+	spare := a.Loading*math.Exp(lnFed) - a.ResidualKgPerKg
+	if !(spare > 0) {
+		return water, false
+	}
+	floor, ok := q.floor(a, shift, water/(1-water))
+	if !ok {
+		return water, false
+	}
+	b.floorWater = floor / (1 + floor)
+	b.volumeM3 = LotVolume(b.m, b.feed, q.tempK)
+	b.stream.diffusivityM2S *= a.Rate
+	b.filmMS = b.stream.film(packedSherwood(b.reynolds(), b.stream.schmidt()), b.sorbent.BeadDiameterM)
+	b.insideMS = insideBead(b.stream, b.sorbent)
+	b.htuM = b.velocityMS / (inSeries(b.filmMS, b.insideMS) * 6 * (1 - b.rig.VoidShare) / b.sorbent.BeadDiameterM)
+	removedKg := solventKg * (water/(1-water) - floor)
+	b.frontMPerM3 = removedKg / b.volumeM3 / (b.areaM2 * b.bulk() * spare)
+	length := b.length(c.bedKg)
+	recycled := b.recycledM3(length)
+	return b.collected(length, recycled, b.volumeM3+recycled), true
+}
+
+// floor is the solution in equilibrium with what is on the sorbent already.
+func (q *quickSorption) floor(a *Aside, shift, highest float64) (ratio float64, ok bool) {
+	lo, hi := math.Log(leastWater), math.Log(highest)
+	v := hi - 3
+	want := math.Log(a.ResidualKgPerKg / a.Loading)
+	for range 80 {
+		lnQ, slope := q.lnUptake(v, shift)
+		if lnQ > want {
+			hi = v
+		} else {
+			lo = v
+		}
+		next := v - (lnQ-want)/slope
+		if !(next > lo && next < hi) {
+			next = (lo + hi) / 2
+		}
+		if math.Abs(next-v) < 1e-9 {
+			return math.Exp(next), true
+		}
+		v = next
+	}
+	return math.Exp(v), false
+}
