@@ -46,12 +46,12 @@ func (f *flow) settle(place int, s *surface) turn {
 	}
 	r := s.reader()
 	f.dry(func(i int, a *steps.Aside) (float64, bool) {
-		v := r.at(a, math.Log(f.water[i]))
-		f.kg[i] = v[1]
-		for k := range columns {
-			columns[k][i] = v[2+k]
+		v, _ := r.at(a, math.Log(f.water[i]))
+		for k, at := range [...]int{atLost, atHeldLost, atAqueousKg, atHeldKg} {
+			columns[k][i] = v[at]
 		}
-		return math.Exp(v[0]), true
+		f.kg[i] = math.Max(least, f.kg[i]-v[atLost]-v[atHeldLost])
+		return math.Exp(v[atWater]), true
 	})
 	for k := range 2 {
 		t.lostKg[o.Losses[k].Cause], t.wasteKg[o.Discards[k].What] = columns[k], columns[2+k]
@@ -110,71 +110,20 @@ func (f *flow) forerun(place int, s *surface) turn {
 	own := f.own(place)
 	r := s.reader()
 	f.dry(func(i int, a *steps.Aside) (float64, bool) {
-		v := r.at(a, math.Log(f.water[i]))
-		boilH := settleH + math.Exp(v[2])/h.share[i]
+		in := f.water[i]
+		v, along := r.at(a, math.Log(in))
+		way := math.Max(0, math.Log(in/s.goal))
+		boilH := settleH + way*math.Exp(along[wayAbove])/h.share[i]
 		flow := math.Max(practice["cooling-flow"].SI, s.bare.Condenser.NeededM3PerS*h.share[i])
-		h.book(&t, i, o, own, v[1]/h.share[i]+boilH, hot0, boilH, flow, setsUp, 1, 0)
-		drawn[i], discarded[i] = math.Exp(v[4]), math.Exp(v[5])
-		vapour[i] = v[3] * h.vapour[i] * boilH / 24
-		f.kg[i] = v[3] - vapour[i]
-		return math.Exp(v[0]), true
+		h.book(&t, i, o, own, v[atHeatUp]/h.share[i]+boilH, hot0, boilH, flow, setsUp, 1, 0)
+		drawn[i], discarded[i] = way*math.Exp(along[wayLost]), way*math.Exp(along[wayAqueousKg])
+		vapour[i] = (f.kg[i] - drawn[i]) * h.vapour[i] * boilH / 24
+		f.kg[i] = math.Max(least, f.kg[i]-drawn[i]-vapour[i])
+		return math.Min(in, s.goal*math.Exp(along[wayOut])), true
 	})
 	t.lostKg[o.Losses[0].Cause], t.lostKg[o.Losses[1].Cause], t.wasteKg[o.Discards[0].What] = drawn, vapour, discarded
 	return t
 }
-
-// The values of a trap's surface. Heats are hours of the heater, each charge.
-const (
-	trapFloor = iota // ln
-	trapOut          // ln
-	trapHeatUp
-	trapAbove // boil-up above the corner of the efficiency, over spanAbove
-	trapBelow // below it at full efficiency, over spanBelow
-	trapAqueousM3
-	trapAqueousLost // solvent; these three over the water removed
-	trapAqueousKg
-	trapHeldLost
-	trapHeldKg
-	trapKept
-	trapValueCount
-)
-
-// spans measure the way from one water content to another above a floor f:
-// the vapour needed goes about with ln((w_1 - f)/(w_2 - f)).
-func spans(in, out, floor, corner float64) (above, below float64) {
-	way := func(from, to float64) float64 {
-		if !(from > to) {
-			return 0
-		}
-		floor := math.Min(floor, 0.97*to)
-		return math.Log((from - floor) / (to - floor))
-	}
-	return leastSpan + way(in, math.Max(corner, out)), leastSpan + way(math.Min(corner, in), out)
-}
-
-const leastSpan = 0.02
-
-func (s *surface) trapValues(o, second *steps.Outcome, in, corner float64) []float64 {
-	v := make([]float64, trapValueCount)
-	out := o.Out.Water()
-	above, below := spans(in, out, o.Floor, corner)
-	slow := second.Figure("reflux, each charge") - o.Figure("reflux, each charge") // 1/0.5 - 1 = 1
-	removed := in - out + 1e-9
-	v[trapFloor], v[trapOut] = math.Log(o.Floor), math.Log(out)
-	v[trapHeatUp] = o.Figure("heat-up, each charge")
-	v[trapAbove], v[trapBelow] = (o.Figure("reflux, each charge")-slow)/above, slow/below
-	v[trapAqueousM3] = o.Figure("aqueous layer, each charge") * 1e-6 / removed
-	v[trapAqueousLost], v[trapAqueousKg] = o.Losses[0].SolventKg/removed, o.Discards[0].Kg/removed
-	v[trapHeldLost], v[trapHeldKg] = o.Losses[1].SolventKg, o.Discards[1].Kg
-	v[trapKept] = o.Out.SolventKg
-	if out < math.Max(s.goal, trapMargin*o.Floor)*(1-1e-6) && out < in*(1-1e-6) {
-		s.past = true
-	}
-	return v
-}
-
-// trapMargin is how close to its floor a trap is run.
-const trapMargin = 1.05
 
 func (f *flow) trap(place int, s *surface) turn {
 	o, l := &f.run.Outcomes[place], f.lot
@@ -195,7 +144,7 @@ func (f *flow) trap(place int, s *surface) turn {
 		cools = 0
 	}
 	efficiency, corner := l.practice("trap-efficiency"), practice["trap-efficiency-below"].SI
-	lowest, shortest := practice["trap-outlet-minimum"].SI, practice["trap-reflux-minimum"].SI/3600
+	shortest := practice["trap-reflux-minimum"].SI / 3600
 	usable, draining := l.Case.ReceiverTakesM3(), practice["draining-time"].SI/3600
 	drainings := func(m3 float64) float64 { return math.Max(1, math.Ceil(m3/usable-1e-9)) }
 	drainings0 := o.Figure("drainings, each charge")
@@ -203,22 +152,19 @@ func (f *flow) trap(place int, s *surface) turn {
 	r := s.reader()
 	f.dry(func(i int, a *steps.Aside) (float64, bool) {
 		in := f.water[i]
-		v := r.at(a, math.Log(in))
-		floor := math.Exp(v[trapFloor])
-		out := math.Min(in, math.Max(math.Max(s.goal, trapMargin*floor), lowest))
-		if s.past {
-			out = math.Exp(v[trapOut])
-		}
-		above, below := spans(in, out, floor, corner)
-		removed := in - out + 1e-9
-		boilH := math.Max(shortest, (v[trapAbove]*above+v[trapBelow]*below/efficiency[i])/h.share[i])
+		v, along := r.at(a, math.Log(in))
+		floor, filled := math.Exp(v[atFloor]), math.Exp(v[atWater])
+		out := math.Min(math.Min(in, filled), math.Max(s.goal, trapMargin*floor))
+		above, below := spans(filled, out, floor, corner)
+		boilH := math.Max(shortest, (v[atBoil]+along[wayAbove]*above+along[wayBelow]*below/efficiency[i])/h.share[i])
 		flow := math.Max(practice["cooling-flow"].SI, s.bare.Condenser.NeededM3PerS*h.share[i])
-		more := draining * (drainings(v[trapAqueousM3]*removed) - drainings0)
-		h.book(&t, i, o, own, v[trapHeatUp]/h.share[i]+boilH, hot0, boilH, flow, 1, cools, more)
-		lost[0][i], lost[1][i] = v[trapAqueousLost]*removed, v[trapHeldLost]
-		lost[2][i] = v[trapKept] * h.vapour[i] * boilH / 24
-		waste[0][i], waste[1][i] = v[trapAqueousKg]*removed, v[trapHeldKg]
-		f.kg[i] = v[trapKept] - lost[2][i]
+		removed := math.Max(0, filled-out)
+		more := draining * (drainings(v[atAqueousM3]+along[wayAqueousM3]*removed) - drainings0)
+		h.book(&t, i, o, own, v[atHeatUp]/h.share[i]+boilH, hot0, boilH, flow, 1, cools, more)
+		lost[0][i], lost[1][i] = v[atLost]+along[wayLost]*removed, v[atHeldLost]
+		lost[2][i] = (f.kg[i] - lost[0][i] - lost[1][i]) * h.vapour[i] * boilH / 24
+		waste[0][i], waste[1][i] = v[atAqueousKg]+along[wayAqueousKg]*removed, v[atHeldKg]
+		f.kg[i] = math.Max(least, f.kg[i]-lost[0][i]-lost[1][i]-lost[2][i])
 		return out, true
 	})
 	for k := range lost {

@@ -148,12 +148,29 @@ func (f *flow) column(place int) (turn, error) {
 		return turn{}, err
 	}
 	loading, residual, rate := f.lot.loading(f.run.Route[place].Agent), f.lot.column(f.lot.residual()), f.lot.columnRate()
+	t := f.pumped(place)
 	f.dry(func(i int, a *steps.Aside) (float64, bool) {
 		a.Loading, a.ResidualKgPerKg, a.Rate = loading[i], residual[i], rate[i]
 		return quick.Water(f.water[i], f.kg[i], a)
 	})
 	f.lose(place)
-	return turn{}, nil
+	return t, nil
+}
+
+// pumped is the work of a column, which goes with the volume that is pumped.
+func (f *flow) pumped(place int) turn {
+	o := &f.run.Outcomes[place]
+	k := f.lot.Case
+	lot := 1e3 * steps.LotVolume(k.Mixture, o.In, k.Job.Site.RoomK)
+	back, pump := o.Figure("first runnings to return"), o.Figure("pump time")
+	attended := k.Catalog.Practice["column-attended-share"].SI
+	own, energy := f.own(place), f.ownEnergy(place+1)
+	t := turn{hours: make([]float64, f.lot.n), attended: make([]float64, f.lot.n), energyKWh: make([]float64, f.lot.n)}
+	for i, kg := range f.kg {
+		more := lot * (kg/o.In.SolventKg - 1) / (lot + back)
+		t.hours[i], t.attended[i], t.energyKWh[i] = o.HoursTotal+pump*more, own+attended*pump*more, energy*(1+more)
+	}
+	return t
 }
 
 func (f *flow) salt(place int) (turn, error) {

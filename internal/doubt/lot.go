@@ -26,7 +26,7 @@ type Lot struct {
 	inputs  []spread.Input
 	columns map[string][]float64 // by name of the input
 	asides  []steps.Aside        // shifts only
-	nodes   *nodes
+	nodes   map[float64]*nodes
 	boiled  map[string]*surface
 	holds   map[float64]*steps.Solubilities // by temperature
 	err     error
@@ -37,7 +37,7 @@ func New(k *routes.Case, book costs.Book, site *costs.Arrangement, n int, seed u
 	if n < 1 || n > spread.MaxDraws {
 		return nil, fmt.Errorf("%d draws: 1 to %d are allowed", n, spread.MaxDraws)
 	}
-	l := &Lot{Case: k, Book: book, Site: site, n: n, seed: seed, columns: map[string][]float64{}, boiled: map[string]*surface{}, holds: map[float64]*steps.Solubilities{}}
+	l := &Lot{Case: k, Book: book, Site: site, n: n, seed: seed, columns: map[string][]float64{}, nodes: map[float64]*nodes{}, boiled: map[string]*surface{}, holds: map[float64]*steps.Solubilities{}}
 	pair, trend := l.column(l.pair()), l.column(l.trend())
 	l.asides = make([]steps.Aside, n)
 	for i := range l.asides {

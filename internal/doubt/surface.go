@@ -75,24 +75,22 @@ var bare = map[string]float64{
 
 const halfEfficient = 0.5
 
-func (l *Lot) nodesOf() (*nodes, error) {
-	if l.nodes != nil {
-		return l.nodes, nil
+// nodesAt prepares cases at a share of the way to the ends of the inputs.
+func (l *Lot) nodesAt(share float64) (*nodes, error) {
+	if n, ok := l.nodes[share]; ok {
+		return n, nil
 	}
 	ends := func(in spread.Input) (lo, hi float64) {
 		return math.Log(in.Quantile(nodeTail)), math.Log(in.Quantile(1 - nodeTail))
 	}
 	lo, hi := ends(l.pair())
 	loTrend, hiTrend := ends(l.trend())
-	var last error
-	for _, share := range []float64{1, 0.6, 0.3, 0} { // the ends may lie where the model has no layers
-		n := &nodes{pair: newAxis(share*lo, share*hi, pairPoints), trend: newAxis(share*loTrend, share*hiTrend, trendPoints)}
-		if last = n.fill(l.Case); last == nil {
-			l.nodes = n
-			return n, nil
-		}
+	n := &nodes{pair: newAxis(share*lo, share*hi, pairPoints), trend: newAxis(share*loTrend, share*hiTrend, trendPoints)}
+	if err := n.fill(l.Case); err != nil {
+		return nil, err
 	}
-	return nil, last
+	l.nodes[share] = n
+	return n, nil
 }
 
 // nodeTail is the share of draws beyond either end of the nodes; they are read at it.
@@ -112,9 +110,6 @@ func (n *nodes) fill(k *routes.Case) error {
 			if err != nil {
 				return err
 			}
-			if (under.Trap == nil) != (k.Trap == nil) {
-				return fmt.Errorf("water and %s part in one and not in the other", k.Solvent.Name)
-			}
 			row = append(row, under.WithPractice(bare))
 		}
 		n.cases = append(n.cases, row)
@@ -122,20 +117,34 @@ func (n *nodes) fill(k *routes.Case) error {
 	return nil
 }
 
-// surface is one stage over pair, trend and ln of the water it is given.
+// surface is one stage over pair, trend and ln of the water it is given: what it
+// does at once, and what goes with the way from there to where it ends.
 type surface struct {
-	nodes  *nodes
-	water  axis
-	values [][]float64 // at each node, one after the other
-	kind   steps.Kind
-	goal   float64 // kg/kg
-	past   bool    // filling the receiver goes past the goal
-	bare   steps.Outcome
+	nodes       *nodes
+	kind        steps.Kind
+	goal        float64 // kg/kg, no lower than is claimed of any still
+	water       axis
+	values      [][]float64 // at each node, one after the other
+	along       axis
+	alongValues [][]float64
+	bare        steps.Outcome // of one node, for the still's own figures
 }
+
+// widerWater is how much further than the draws the water axis goes, so that other
+// draws find their place on it.
+const widerWater = 0.3
+
+// reaches are the shares of the way to the ends of the inputs at which a step is
+// tried: at the ends themselves the model may have no layers.
+var reaches = []float64{1, 0.6, 0.3}
 
 // surfaceOf runs a stage in full at all nodes, or finds it done already.
 func (l *Lot) surfaceOf(run *routes.Run, place int, waters []float64) (*surface, error) {
-	o := &run.Outcomes[place]
+	goal := l.Case.GoalOf(run, place)
+	key := fmt.Sprint(run.Route[max(0, place-1):min(len(run.Route), place+2)].ID(), place, run.Settings.Stages, run.Outcomes[place].In, goal)
+	if s, ok := l.boiled[key]; ok {
+		return s, nil
+	}
 	lo, hi := math.Inf(1), 0.0
 	for _, w := range waters {
 		if !math.IsInf(w, 1) {
@@ -144,106 +153,217 @@ func (l *Lot) surfaceOf(run *routes.Run, place int, waters []float64) (*surface,
 	}
 	margin := math.Pow(lo/hi, widerWater)
 	lo, hi = lo*margin, math.Min(hi/margin, 0.99)
-	goal := l.goal(run, place)
-	key := fmt.Sprint(run.Route[max(0, place-1):min(len(run.Route), place+2)].ID(), place, run.Settings.Stages, o.In, goal)
-	if s, ok := l.boiled[key]; ok {
-		return s, nil
+	var last error
+	for _, share := range reaches {
+		var n *nodes
+		if n, last = l.nodesAt(share); last != nil {
+			continue
+		}
+		s := &surface{nodes: n, kind: run.Outcomes[place].Kind, goal: math.Max(goal, l.Case.Catalog.Practice["trap-outlet-minimum"].SI)}
+		if last = s.fill(run, place, lo, hi); last == nil {
+			l.boiled[key] = s
+			return s, nil
+		}
 	}
-	n, err := l.nodesOf()
-	if err != nil {
-		return nil, err
+	return nil, last
+}
+
+// pointsFor are as many as a span of water asks for.
+func pointsFor(lo, hi float64) int {
+	if hi < 1.3*lo {
+		return 2
 	}
-	points := waterPoints
-	if hi < 1.2*lo {
-		points = 2
+	return waterPoints
+}
+
+// fill runs the stage at all nodes: first what it does at once, then along the way.
+// The way begins clear of the goal and of every floor.
+func (s *surface) fill(run *routes.Run, place int, lo, hi float64) (err error) {
+	s.water = newAxis(math.Log(lo), math.Log(hi), pointsFor(lo, hi))
+	if s.values, err = s.each(run, place, s.water, s.atOnce); err != nil || s.kind == steps.Settle {
+		return err
 	}
-	s := &surface{nodes: n, water: newAxis(math.Log(lo), math.Log(hi), points), kind: o.Kind, goal: goal}
-	for _, row := range n.cases {
+	clear := 1.1
+	if s.kind == steps.Forerun {
+		clear = 1.02
+	}
+	from := math.Max(lo, clear*s.goal)
+	for _, v := range s.values {
+		from = math.Max(from, clear*trapMargin*math.Exp(v[atFloor]))
+	}
+	to := math.Max(from, hi)
+	s.along = newAxis(math.Log(from), math.Log(to), pointsFor(from, to))
+	s.alongValues, err = s.each(run, place, s.along, s.onTheWay)
+	return err
+}
+
+// each runs something at all nodes of an axis.
+func (s *surface) each(run *routes.Run, place int, water axis, one func(k *routes.Case, run *routes.Run, place int, lot steps.Lot) ([]float64, error)) (all [][]float64, err error) {
+	for _, row := range s.nodes.cases {
 		for _, k := range row {
-			for _, lnWater := range s.water.at {
-				v, err := s.full(k, run, place, math.Exp(lnWater))
+			for _, lnWater := range water.at {
+				lot := run.Outcomes[place].In
+				w := math.Exp(lnWater)
+				lot.WaterKg = lot.SolventKg * w / (1 - w)
+				v, err := one(k, run, place, lot)
 				if err != nil {
 					return nil, err
 				}
-				s.values = append(s.values, v)
+				all = append(all, v)
 			}
 		}
 	}
-	l.boiled[key] = s
-	return s, nil
+	return all, nil
 }
 
-// widerWater is how much further than the draws the water axis goes, so that other
-// draws find their place on it.
-const widerWater = 0.3
+// Values of what a stage does at once: heats in hours of the heater, each charge.
+const (
+	atFloor     = iota // ln; of a trap
+	atWater            // ln, once the receiver is full; of settling: in the product
+	atHeatUp           // to the boil
+	atBoil             // to fill the receiver
+	atAqueousM3        // each charge
+	atLost             // solvent: in the aqueous layer, or in the drawn water
+	atAqueousKg
+	atHeldLost // in the receiver, or with the interface
+	atHeldKg
+	atCount
+)
 
-func (l *Lot) goal(run *routes.Run, place int) float64 {
-	if place < len(run.Route)-1 {
-		return run.Settings.HandOverMgPerKg[place] * 1e-6
-	}
-	if aim := run.Settings.AimMgPerKg; aim > 0 {
-		return aim * 1e-6
-	}
-	return l.Case.Goal()
-}
-
-// least keeps logarithms of amounts that may be nothing.
-const least = 1e-9
-
-// full is what a full run says at a node.
-func (s *surface) full(k *routes.Case, run *routes.Run, place int, water float64) ([]float64, error) {
-	lot := run.Outcomes[place].In
-	lot.WaterKg = lot.SolventKg * water / (1 - water)
-	o, err := k.Stage(run, place, lot)
+// atOnce is a trap whose goal is met when its receiver is full, a forerun of which
+// nothing is drawn, or settling.
+func (s *surface) atOnce(k *routes.Case, run *routes.Run, place int, lot steps.Lot) ([]float64, error) {
+	o, err := k.Stage(run, place, lot, 1)
 	if err != nil {
 		return nil, err
 	}
 	s.bare = o
+	v := make([]float64, atCount)
+	v[atFloor], v[atWater] = math.Log(least), math.Log(o.Out.Water())
 	switch s.kind {
 	case steps.Trap:
-		second, err := k.WithPractice(map[string]float64{"trap-efficiency": halfEfficient}).Stage(run, place, lot)
+		v[atFloor], v[atHeatUp], v[atBoil] = math.Log(o.Floor), o.Figure("heat-up, each charge"), o.Figure("reflux, each charge")
+		v[atAqueousM3] = o.Figure("aqueous layer, each charge") * 1e-6
+	case steps.Forerun:
+		v[atHeatUp] = o.Figure("heat-up, each charge")
+		return v, nil
+	}
+	v[atLost], v[atHeldLost] = o.Losses[0].SolventKg, o.Losses[1].SolventKg
+	v[atAqueousKg], v[atHeldKg] = o.Discards[0].Kg, o.Discards[1].Kg
+	return v, nil
+}
+
+// Values along the way, over its length. A trap has one above and one below the
+// water at which its efficiency falls; its amounts go with the water removed.
+const (
+	wayAbove = iota // boil-up
+	wayBelow        // at full efficiency
+	wayAqueousM3
+	wayLost
+	wayAqueousKg
+	wayOut   // ln of the outlet over where it should end, of a forerun
+	wayCount // a forerun's boil-up, loss and discard are held as logarithms
+)
+
+// least keeps logarithms of amounts that may be nothing.
+const least = 1e-9
+
+func (s *surface) onTheWay(k *routes.Case, run *routes.Run, place int, lot steps.Lot) ([]float64, error) {
+	o, err := k.Stage(run, place, lot, s.goal)
+	if err != nil {
+		return nil, err
+	}
+	v := make([]float64, wayCount)
+	if s.kind == steps.Forerun {
+		way := math.Log(lot.Water() / s.goal)
+		v[wayAbove] = math.Log(o.Figure("drawing off, each charge")/way + least)
+		v[wayLost], v[wayAqueousKg] = math.Log(o.Losses[0].SolventKg/way+least), math.Log(o.Discards[0].Kg/way+least)
+		v[wayOut] = math.Log(o.Out.Water() / s.goal)
+		return v, nil
+	}
+	full, err := k.Stage(run, place, lot, 1)
+	if err != nil {
+		return nil, err
+	}
+	slow := 0.0
+	corner := k.Catalog.Practice["trap-efficiency-below"].SI
+	if o.Out.Water() < corner {
+		second, err := k.WithPractice(map[string]float64{"trap-efficiency": halfEfficient}).Stage(run, place, lot, s.goal)
 		if err != nil {
 			return nil, err
 		}
-		return s.trapValues(&o, &second, water, k.Catalog.Practice["trap-efficiency-below"].SI), nil
-	case steps.Forerun:
-		return []float64{
-			math.Log(o.Out.Water()), o.Figure("heat-up, each charge"), math.Log(o.Figure("drawing off, each charge") + least), o.Out.SolventKg,
-			math.Log(o.Losses[0].SolventKg + least), math.Log(o.Discards[0].Kg + least),
-		}, nil
+		slow = second.Figure("reflux, each charge") - o.Figure("reflux, each charge") // 1/0.5 - 1 = 1
 	}
-	return []float64{math.Log(o.Out.Water()), o.Out.SolventKg, o.Losses[0].SolventKg, o.Losses[1].SolventKg, o.Discards[0].Kg, o.Discards[1].Kg}, nil
+	from, to := full.Out.Water(), o.Out.Water()
+	above, below := spans(from, to, o.Floor, corner)
+	v[wayAbove] = perWay(o.Figure("reflux, each charge")-full.Figure("reflux, each charge")-slow, above)
+	v[wayBelow] = perWay(slow, below)
+	v[wayAqueousM3] = perWay((o.Figure("aqueous layer, each charge")-full.Figure("aqueous layer, each charge"))*1e-6, from-to)
+	v[wayLost] = perWay(o.Losses[0].SolventKg-full.Losses[0].SolventKg, from-to)
+	v[wayAqueousKg] = perWay(o.Discards[0].Kg-full.Discards[0].Kg, from-to)
+	return v, nil
 }
+
+func perWay(amount, way float64) float64 {
+	if !(way > 1e-12) {
+		return 0
+	}
+	return amount / way
+}
+
+// spans measure the way from one water content to another above a floor f: the
+// vapour needed goes about with ln((w_1 - f)/(w_2 - f)).
+func spans(from, to, floor, corner float64) (above, below float64) {
+	way := func(from, to float64) float64 {
+		if !(from > to) {
+			return 0
+		}
+		floor := math.Min(floor, to/trapMargin)
+		return math.Log((from - floor) / (to - floor))
+	}
+	return way(from, math.Max(corner, to)), way(math.Min(corner, from), to)
+}
+
+// trapMargin is how close to its floor a trap is run.
+const trapMargin = 1.05
 
 // reader reads a surface at one draw after the other.
 type reader struct {
-	s                   *surface
-	pair, trend, water  []float64
-	values              []float64
-	lastPair, lastTrend float64
-	lastWater           float64
+	s                         *surface
+	pair, trend, water, along []float64
+	atOnce, onTheWay          []float64
 }
 
-func (s *surface) reader() *reader { return &reader{s: s, values: make([]float64, len(s.values[0]))} }
+func (s *surface) reader() *reader {
+	return &reader{s: s, atOnce: make([]float64, atCount), onTheWay: make([]float64, wayCount)}
+}
 
 // at reads all values.
-func (r *reader) at(a *steps.Aside, lnWater float64) []float64 {
+func (r *reader) at(a *steps.Aside, lnWater float64) (atOnce, onTheWay []float64) {
 	s := r.s
 	r.pair = s.nodes.pair.shares(a.Shift.Ln25, r.pair)
 	r.trend = s.nodes.trend.shares(a.Shift.LnTrend, r.trend)
 	r.water = s.water.shares(lnWater, r.water)
-	clear(r.values)
+	r.sum(r.water, s.values, r.atOnce)
+	if s.alongValues != nil {
+		r.along = s.along.shares(lnWater, r.along)
+		r.sum(r.along, s.alongValues, r.onTheWay)
+	}
+	return r.atOnce, r.onTheWay
+}
+
+func (r *reader) sum(water []float64, values [][]float64, into []float64) {
+	clear(into)
 	node := 0
 	for _, p := range r.pair {
 		for _, t := range r.trend {
-			for _, w := range r.water {
+			for _, w := range water {
 				share := p * t * w
-				for k, v := range s.values[node] {
-					r.values[k] += share * v
+				for k, v := range values[node] {
+					into[k] += share * v
 				}
 				node++
 			}
 		}
 	}
-	return r.values
 }

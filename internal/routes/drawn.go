@@ -69,15 +69,20 @@ func (c *Case) Rerun(plan *Run) (Run, error) {
 	return under.Run(plan.Route, plan.Settings)
 }
 
-// Stage carries out one stage of a run on another lot than its own.
-func (c *Case) Stage(plan *Run, place int, lot steps.Lot) (steps.Outcome, error) {
+// GoalOf is the water (kg/kg) that a stage of a run is carried to.
+func (c *Case) GoalOf(plan *Run, place int) float64 {
+	if place < len(plan.Route)-1 {
+		return plan.Settings.HandOverMgPerKg[place] * 1e-6
+	}
+	return c.aim(plan.Settings)
+}
+
+// Stage carries out one stage of a run on another lot and to another goal (kg/kg)
+// than its own.
+func (c *Case) Stage(plan *Run, place int, lot steps.Lot, goal float64) (steps.Outcome, error) {
 	under := *c
 	under.plan = plan
 	last := place == len(plan.Route)-1
-	goal := under.aim(plan.Settings)
-	if !last {
-		goal = plan.Settings.HandOverMgPerKg[place] * 1e-6
-	}
 	o, err := under.carry(place, plan.Route[place], lot, goal, last, plan.Settings.at(plan.Route, place))
 	if err == nil {
 		err = nothingKept(o)
