@@ -145,7 +145,7 @@ func (f *flow) trap(place int, s *surface) turn {
 	}
 	efficiency, corner := l.practice("trap-efficiency"), practice["trap-efficiency-below"].SI
 	shortest := practice["trap-reflux-minimum"].SI / 3600
-	usable, draining := l.Case.ReceiverTakesM3(), practice["draining-time"].SI/3600
+	usable, draining := l.Case.Catalog.Apparatus[o.Apparatus].Volume.SI, practice["draining-time"].SI/3600
 	drainings := func(m3 float64) float64 { return math.Max(1, math.Ceil(m3/usable-1e-9)) }
 	drainings0 := o.Figure("drainings, each charge")
 	hot0, own := o.Figure("heat-up, each charge")+o.Figure("reflux, each charge"), f.own(place)

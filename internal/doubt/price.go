@@ -73,7 +73,7 @@ func (f *flow) costs() []float64 {
 	seen := map[int]bool{}
 	batches := l.Case.Lot.BatchesPerYear
 	wasteKg := f.wasteShare()
-	for _, u := range f.run.Uses {
+	for _, u := range append(f.unplanned(), f.run.Uses...) {
 		quantity := u.Quantity
 		if u.PerYear {
 			quantity /= batches
@@ -84,6 +84,9 @@ func (f *flow) costs() []float64 {
 		}
 		if u.Head == steps.Purchase && u.Item == l.Case.Solvent.Key {
 			q = litres
+		}
+		if _, priced := l.Book[u.Item]; !priced {
+			continue
 		}
 		unit := l.Book[u.Item].PerUnit.InexactFloat64()
 		price := l.price(u.Item)
@@ -112,6 +115,36 @@ func (f *flow) costs() []float64 {
 		total[i] = (total[i] + max(waste[i], least[i])) / litres[i]
 	}
 	return total
+}
+
+// unplanned are the uses of which the plan needs nothing and a draw may need some:
+// what a still loses and discards.
+func (f *flow) unplanned() (uses []routes.StageUse) {
+	planned := map[routes.StageUse]bool{}
+	for _, u := range f.run.Uses {
+		planned[routes.StageUse{Stage: u.Stage, Use: steps.Use{Head: u.Head, Basis: u.Basis}}] = true
+	}
+	add := func(place int, head steps.Head, item, unit, basis string) {
+		use := routes.StageUse{Stage: place + 1, Use: steps.Use{Head: head, Basis: basis}}
+		if !planned[use] {
+			use.Item, use.Unit = item, unit
+			uses = append(uses, use)
+		}
+	}
+	for place, t := range f.turns {
+		o := &f.run.Outcomes[place]
+		for _, loss := range o.Losses {
+			if t.lostKg[loss.Cause] != nil {
+				add(place, steps.SolventLost, f.lot.Case.Solvent.Key, "litre", loss.Cause)
+			}
+		}
+		for _, d := range o.Discards {
+			if t.wasteKg[d.What] != nil {
+				add(place, steps.Waste, f.lot.Case.WasteItem(d.Class), "kg", d.What)
+			}
+		}
+	}
+	return uses
 }
 
 // quantity is what a use comes to in each draw; nil: as planned. seen remembers the

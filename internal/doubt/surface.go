@@ -141,7 +141,7 @@ var reaches = []float64{1, 0.6, 0.3}
 // surfaceOf runs a stage in full at all nodes, or finds it done already.
 func (l *Lot) surfaceOf(run *routes.Run, place int, waters []float64) (*surface, error) {
 	goal := l.Case.GoalOf(run, place)
-	key := fmt.Sprint(run.Route[max(0, place-1):min(len(run.Route), place+2)].ID(), place, run.Settings.Stages, run.Outcomes[place].In, goal)
+	key := fmt.Sprint(run.Route[max(0, place-1):min(len(run.Route), place+2)].ID(), place, run.Settings.Stages, run.Settings.Receiver, run.Settings.ReceiverC, run.Outcomes[place].In, goal)
 	if s, ok := l.boiled[key]; ok {
 		return s, nil
 	}

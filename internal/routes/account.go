@@ -28,7 +28,7 @@ func (c *Case) account(place int, o steps.Outcome, choice choice) []StageUse {
 		use(steps.SolventLost, c.Solvent.Key, "litre", l.SolventKg/density*1e3, l.Cause)
 	}
 	for _, d := range o.Discards {
-		use(steps.Waste, c.wasteItem(d.Class), "kg", d.Kg, d.What)
+		use(steps.Waste, c.WasteItem(d.Class), "kg", d.Kg, d.What)
 	}
 	switch o.Kind {
 	case steps.Trap:
@@ -58,7 +58,7 @@ func (c *Case) account(place int, o steps.Outcome, choice choice) []StageUse {
 	case steps.Buy:
 		use(steps.Purchase, c.Solvent.Key+"-dry", "litre", c.Lot.BatchM3*1e3, "the batch bought dry")
 		if c.Lot.Reclaimed {
-			use(steps.Waste, c.wasteItem(steps.SolventWaste), "kg", o.In.MassKg(), discardedLot)
+			use(steps.Waste, c.WasteItem(steps.SolventWaste), "kg", o.In.MassKg(), discardedLot)
 		}
 	}
 	return uses
@@ -91,7 +91,7 @@ func (c *Case) sieveUses(place int, o steps.Outcome, after string) []StageUse {
 		heldKg += l.SolventKg
 	}
 	uses = append(uses, StageUse{place, steps.Use{
-		Head: steps.Waste, Item: c.wasteItem(steps.WetSolidWaste), Unit: "kg", Quantity: (o.AgentKg + heldKg) / lives,
+		Head: steps.Waste, Item: c.WasteItem(steps.WetSolidWaste), Unit: "kg", Quantity: (o.AgentKg + heldKg) / lives,
 		Basis: "solvent-wet beads, discarded after their last use",
 	}})
 	if oven, runs := c.ovenRuns(o.AgentKg, after); runs > 0 {
@@ -142,7 +142,8 @@ func (c *Case) wear(place int, a *catalog.Apparatus, count int) []StageUse {
 	}}}
 }
 
-func (c *Case) wasteItem(class steps.WasteClass) string {
+// WasteItem is the price item for a class of waste of the lot.
+func (c *Case) WasteItem(class steps.WasteClass) string {
 	switch class {
 	case steps.AqueousWaste:
 		return "waste-aqueous"

@@ -244,13 +244,3 @@ func (c *Case) WithPractice(facts map[string]float64) *Case {
 	under.Catalog, under.known = &cat, map[stepKey]result{}
 	return &under
 }
-
-// ReceiverTakesM3 is the aqueous layer that the receiver of a trap takes before it
-// has to be drained.
-func (c *Case) ReceiverTakesM3() float64 {
-	receiver, err := c.receiver()
-	if err != nil {
-		return math.Inf(1)
-	}
-	return receiver.Volume.SI
-}
