@@ -83,3 +83,9 @@ func (l *Lot) solubilities(tK float64) *steps.Solubilities {
 	l.holds[tK] = steps.NewSolubilities(l.Case.Mixture, tK, lo, hi)
 	return l.holds[tK]
 }
+
+// Like takes over what another set of draws of the same lot has worked out.
+func (l *Lot) Like(other *Lot) { l.nodes, l.boiled = other.nodes, other.boiled }
+
+// Column is the draws of an input by its name. It must not be changed.
+func (l *Lot) Column(name string) []float64 { return l.columns[name] }

@@ -28,7 +28,7 @@ func (r *reader) lots(n *document.Node) {
 // lot reads one lot; lines remembers the names that are taken.
 func (r *reader) lot(n *document.Node, lines map[string]int) Lot {
 	f := n.Map("name", "solvent", "batch", "batches", "water", "free water", "target", "not below", "needed within", "litres per week",
-		"peroxide", "heater", "sieve history", "vessel height", "reclaimed")
+		"peroxide", "heater", "sieve history", "vessel height", "reclaimed", "failed batch")
 	lot := Lot{Line: n.Line(), Reclaimed: f.Get("reclaimed").Bool()}
 	if name := f.Get("name"); name != nil {
 		lot.Name = r.label(name)
@@ -36,6 +36,10 @@ func (r *reader) lot(n *document.Node, lines map[string]int) Lot {
 	}
 	if s := r.solvent(f.Need("solvent")); s != nil {
 		lot.Solvent = s.Key
+	}
+	lot.FailedBatch = r.job.Site.FailedBatch
+	if n := f.Get("failed batch"); n != nil {
+		lot.FailedBatch = r.failedBatch(n)
 	}
 	r.amounts(n, f, &lot)
 	r.limitsOf(f, &lot)

@@ -102,7 +102,6 @@ func (r *reader) whole(root *document.Node) {
 	j.Assurance = 0.9
 	if n := f.Get("assurance"); n != nil {
 		j.Assurance, _ = r.measure(n, quantity.Share, between(0.5, 0.999, "50 % to 99.9 %"))
-		r.notYet(n)
 	} else {
 		r.assume("assurance", "90 %")
 	}

@@ -12,7 +12,7 @@ const zeroCelsius = 273.15
 // site reads the place and its rates. What is missing comes from the catalog's practice.
 func (r *reader) site(n *document.Node) {
 	f := n.Map("room", "pressure", "humidity", "receiver", "technician", "electricity", "cooling water",
-		"attended hours per day", "peroxide limit", "karl fischer", "cooling", "waste container", "waste collections")
+		"attended hours per day", "peroxide limit", "karl fischer", "cooling", "waste container", "waste collections", "failed batch")
 	r.job.Site = Site{
 		RoomK: r.orPractice(f.Get("room"), "site.room", "site-room", quantity.Temperature,
 			between(zeroCelsius+5, zeroCelsius+40, "5 °C to 40 °C")),
@@ -32,6 +32,9 @@ func (r *reader) site(n *document.Node) {
 	r.job.Site.Cooling = r.orWord(f.Get("cooling"), "site.cooling", Tap,
 		func(n *document.Node) string { return n.OneOf(Tap, Chiller, Loop) })
 	r.waste(f)
+	if n := f.Get("failed batch"); n != nil {
+		r.job.Site.FailedBatch = r.failedBatch(n)
+	}
 	r.rate(f.Get("technician"), "technician", "hour")
 	r.rate(f.Get("electricity"), "electricity", "kwh")
 	r.rate(f.Get("cooling water"), "cooling-water", "m3")

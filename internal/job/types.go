@@ -36,10 +36,11 @@ type Site struct {
 	RoomK, PressurePa, Humidity, ReceiverK float64
 	AttendedSecondsPerDay                  float64
 	PeroxideLimitKgPerM3                   float64
-	KarlFischer                            string  // coulometric or volumetric
-	Cooling                                string  // Tap, Chiller or Loop
-	WasteContainerKg                       float64 // what a waste container takes
-	WasteCollectionsPerYear                float64 // 0 where not given
+	KarlFischer                            string       // coulometric or volumetric
+	Cooling                                string       // Tap, Chiller or Loop
+	WasteContainerKg                       float64      // what a waste container takes
+	WasteCollectionsPerYear                float64      // 0 where not given
+	FailedBatch                            *FailedBatch // of every lot that does not say its own
 }
 
 // Ways to cool a condenser.
@@ -131,14 +132,21 @@ type Lot struct {
 	NeededWithinS   float64 // 0 where there is no limit
 	WeeklyM3        float64 // what the apparatus must be able to dry in a week; 0 where not given
 	Peroxide        *Peroxide
-	HeaterW         float64    // 0: the still's own
-	SieveHistory    string     // key of catalog.History, or ""
-	SieveHistoryK   float64    // temperature where given as one, else 0
-	ResidualLoading float64    // kg/kg, from the history
-	WaterBand       *WaterBand // of Water; nil where one reading is given
-	VesselHeightM   float64    // 0: from the vessel's charge
+	HeaterW         float64      // 0: the still's own
+	SieveHistory    string       // key of catalog.History, or ""
+	SieveHistoryK   float64      // temperature where given as one, else 0
+	ResidualLoading float64      // kg/kg, from the history
+	FailedBatch     *FailedBatch // nil where neither the lot nor the site says it
+	WaterBand       *WaterBand   // of Water; nil where one reading is given
+	VesselHeightM   float64      // 0: from the vessel's charge
 	Reclaimed       bool
 	Line            int
+}
+
+// FailedBatch is what a batch costs that misses its target.
+type FailedBatch struct {
+	Amount    decimal.Decimal // job currency
+	Converted string          // how it was brought into that currency, "" where it was given in it
 }
 
 // WaterBand is what the dissolved water of a lot may be, kg/kg: nine lots in ten

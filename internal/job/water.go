@@ -11,10 +11,15 @@ import (
 // saturatedWord stands for a lot that holds all the water it can dissolve.
 const saturatedWord = "saturated"
 
-// water reads the dissolved water of a lot: a content, or "saturated", which is
-// what the solvent holds at the temperature of the room.
+// water reads the dissolved water of a lot: a content, a band of it, or
+// "saturated", which is what the solvent holds at the temperature of the room.
 func (r *reader) water(n *document.Node, lot *Lot) (ok bool) {
-	if n == nil || n.IsList() || n.IsMap() || n.Text() != saturatedWord {
+	switch {
+	case n != nil && n.IsMap():
+		return r.waterBand(n, lot)
+	case n != nil && !n.IsList() && isRange(n):
+		return r.waterRange(n, lot)
+	case n == nil || n.IsList() || n.Text() != saturatedWord:
 		lot.Water, ok = r.measure(n, quantity.WaterContent, between(0, 0.5, "0 mg/kg to 500000 mg/kg, or saturated"))
 		return ok
 	}

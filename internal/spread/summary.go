@@ -9,10 +9,14 @@ import (
 )
 
 // Band is what nine draws of ten lie in, and the middle one.
-type Band struct{ Low, Median, High float64 } // 5, 50 and 95 %
+type Band struct {
+	Low, Median, High                float64 // 5, 50 and 95 %
+	LowError, MedianError, HighError float64 // standard errors of the sampling
+}
 
 // BandOf sums up values. NaN entries (a route that failed in that draw) count as
-// above everything.
+// above everything. The error of a quantile is half the way between the values that
+// stand one standard error of its share to either side.
 func BandOf(values []float64) Band {
 	sorted := slices.Clone(values)
 	for i, v := range sorted {
@@ -22,7 +26,11 @@ func BandOf(values []float64) Band {
 	}
 	sort.Float64s(sorted)
 	q := func(p float64) float64 { return stat.Quantile(p, stat.LinInterp, sorted, nil) }
-	return Band{q(0.05), q(0.5), q(0.95)}
+	e := func(p float64) float64 {
+		aside := QuantileError(p, len(sorted))
+		return (q(math.Min(1, p+aside)) - q(math.Max(0, p-aside))) / 2
+	}
+	return Band{q(0.05), q(0.5), q(0.95), e(0.05), e(0.5), e(0.95)}
 }
 
 // Share of the values for which ok holds.
@@ -43,11 +51,7 @@ func QuantileError(p float64, n int) float64 { return math.Sqrt(p * (1 - p) / fl
 // RankCorrelation is Spearman's: how far y moves with x whatever the shape, -1
 // to 1. Zero where one of them does not vary.
 func RankCorrelation(x, y []float64) float64 {
-	r := stat.Correlation(ranks(x), ranks(y), nil)
-	if math.IsNaN(r) {
-		return 0
-	}
-	return r
+	return RanksOf(x).Correlation(RanksOf(y))
 }
 
 // ranks with ties sharing their mean.

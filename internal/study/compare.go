@@ -25,6 +25,9 @@ type Options struct {
 	Settings map[string]map[string]routes.Settings
 	// RankingOnly leaves out the break-evens, the trade-off and the grid of other lots.
 	RankingOnly bool
+	Draws       int    // of what is not known exactly; 0: none
+	Seed        uint64 // of the draws
+
 	// Progress is told the parts that are done and all there are; it may be called
 	// from several goroutines, one at a time. May be nil.
 	Progress func(done, total int)
@@ -38,7 +41,10 @@ func Compare(ctx context.Context, j *job.Job, c *catalog.Catalog, o Options) (*R
 	if err != nil {
 		return nil, err
 	}
-	r := &Report{Version: Version, CatalogDate: c.Date, PriceDate: costs.ReferenceDate(c, j), Job: j, Book: book, Warnings: j.Warnings, catalog: c}
+	if o.Draws == 0 {
+		o.Seed = 0
+	}
+	r := &Report{Draws: o.Draws, Seed: int64(o.Seed), Version: Version, CatalogDate: c.Date, PriceDate: costs.ReferenceDate(c, j), Job: j, Book: book, Warnings: j.Warnings, catalog: c}
 	o.meter = newMeter(o.Progress, parts*len(j.Lots))
 	if err := r.compareLots(ctx, c, o); err != nil {
 		return nil, err
@@ -61,10 +67,11 @@ func Compare(ctx context.Context, j *job.Job, c *catalog.Catalog, o Options) (*R
 	return r, nil
 }
 
-func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog, book costs.Book, given map[string]routes.Settings) (Lot, error) {
+func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog, book costs.Book, o Options) (Lot, *doubts, error) {
+	given := o.Settings[lot.Name]
 	k, err := routes.NewCase(j, lot, c)
 	if err != nil {
-		return Lot{}, err
+		return Lot{}, nil, err
 	}
 	l := Lot{
 		Job: lot, Solvent: k.Solvent,
@@ -74,14 +81,18 @@ func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog
 	if k.Dry() {
 		l.NothingToDo = fmt.Sprintf("nothing to do: the reading of %s is at or below the %s at which a target of %s is accepted; it rests on that Karl Fischer reading of a clear sample%s",
 			quantity.FormatWater(lot.Water), quantity.FormatWater(k.Limit.AcceptAt), quantity.FormatWater(lot.Target), belowDetection(k))
-		return l, nil
+		return l, nil, nil
 	}
 	offered, excluded := k.Candidates()
 	l.Excluded = excluded
 	site := costs.NewArrangement(c, j)
 	tuner := &search.Tuner{Case: k, Book: book, Objective: search.Objective(j.Objective), Site: site}
 	if err := weigh(tuner, j, offered); err != nil {
-		return Lot{}, err
+		return Lot{}, nil, err
+	}
+	drawn, err := newDoubts(k, book, site, o)
+	if err != nil {
+		return Lot{}, nil, err
 	}
 	if given != nil {
 		offered = withSettings(offered, given)
@@ -92,19 +103,19 @@ func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog
 	}
 	for _, r := range offered {
 		if err := ctx.Err(); err != nil {
-			return Lot{}, err
+			return Lot{}, nil, err
 		}
-		run, err := carryOut(tuner, r, given)
+		run, err := carryOut(tuner, r, given, drawn)
 		if reason, ok := refusal(err); ok {
 			l.Excluded = append(l.Excluded, routes.Excluded{ID: r.ID(), Reason: reason})
 			continue
 		}
 		if err != nil {
-			return Lot{}, err
+			return Lot{}, nil, err
 		}
 		route := Route{ID: r.ID(), Label: k.Label(r, run.Settings), Run: run, Cautions: cautions(k, r), Warnings: append(runWarnings(k, run), ovenWarning(k, run)...)}
 		if err := route.account(k, site, book); err != nil {
-			return Lot{}, fmt.Errorf("%s: %w", r.ID(), err)
+			return Lot{}, nil, fmt.Errorf("%s: %w", r.ID(), err)
 		}
 		l.Routes = append(l.Routes, route)
 		l.offered = append(l.offered, r)
@@ -113,9 +124,13 @@ func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog
 			l.costs[route.ID] = route.Bill.PerLitre.InexactFloat64()
 		}
 	}
-	if l.Routes, err = ranked(l.Routes, tuner); err != nil {
-		return Lot{}, err
+	if err := drawn.judge(l.Routes, lot.FailedBatch); err != nil {
+		return Lot{}, nil, err
 	}
+	if l.Routes, err = ranked(l.Routes, tuner); err != nil {
+		return Lot{}, nil, err
+	}
+	l.unsure(drawn)
 	if given == nil {
 		l.dropDominated()
 	}
@@ -124,13 +139,13 @@ func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog
 	}
 	if len(l.Routes) == 0 || l.Routes[0].Rank == 0 {
 		if l.NearMisses, err = nearMisses(ctx, k, tuner); err != nil {
-			return Lot{}, err
+			return Lot{}, nil, err
 		}
 	}
 	l.invest(site)
 	l.follow(k)
 	sort.SliceStable(l.Excluded, func(a, b int) bool { return l.Excluded[a].ID < l.Excluded[b].ID })
-	return l, nil
+	return l, drawn, nil
 }
 
 // withSettings keeps the routes of an earlier run: what is repeated is that run.
@@ -145,11 +160,16 @@ func belowDetection(k *routes.Case) string {
 	return fmt.Sprintf(", which lies below the detection limit of %s", quantity.FormatWater(k.Assay.DetectionLimit))
 }
 
-// carryOut runs a route with the settings given for it, or tunes it.
-func carryOut(t *search.Tuner, r routes.Route, given map[string]routes.Settings) (routes.Run, error) {
+// carryOut runs a route with the settings given for it, or tunes it until it is sure
+// enough.
+func carryOut(t *search.Tuner, r routes.Route, given map[string]routes.Settings, drawn *doubts) (routes.Run, error) {
 	s, ok := given[r.ID()]
 	if !ok {
-		return t.Tune(r)
+		run, err := t.Tune(r)
+		if err != nil {
+			return run, err
+		}
+		return drawn.sure(t, r, run)
 	}
 	if err := s.Fit(r); err != nil {
 		return routes.Run{}, err
@@ -176,6 +196,9 @@ func ranked(all []Route, t *search.Tuner) ([]Route, error) {
 			return nil, err
 		}
 		perLitre := all[i].Bill.PerLitre.InexactFloat64()
+		if miss := all[i].Miss; miss != nil && t.Mix == nil && t.Objective == search.Cost {
+			value += miss.PerLitre.InexactFloat64()
+		}
 		all[i].Objective = value
 		entries[i] = search.Entry{ID: all[i].ID, Meets: all[i].Run.Meets, NoPrice: !all[i].Bill.Priced(), Value: value, CostPerLitre: perLitre, WaterOut: all[i].Run.WaterOut}
 	}

@@ -46,7 +46,7 @@ func (l *Lot) dominator(r Route) *Route {
 }
 
 func (r *Route) dominates(o Route) bool {
-	if r.Run.Meets != o.Run.Meets && !r.Run.Meets || !r.Bill.Priced() && o.Bill.Priced() {
+	if o.Recommended && !r.Recommended || r.Run.Meets != o.Run.Meets && !r.Run.Meets || !r.Bill.Priced() && o.Bill.Priced() {
 		return false
 	}
 	mine, others := r.measures(), o.measures()

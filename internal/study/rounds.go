@@ -31,7 +31,8 @@ func (r *Report) compareLots(ctx context.Context, c *catalog.Catalog, o Options)
 	}
 	r.Book = book
 	for round := 1; ; round++ {
-		if err := r.compareOnce(ctx, c, o); err != nil {
+		drawn, err := r.compareOnce(ctx, c, o)
+		if err != nil {
 			return err
 		}
 		book, changed, err := r.Book.Justified(free(costs.MostOfEach(r.plans())))
@@ -46,22 +47,42 @@ func (r *Report) compareLots(ctx context.Context, c *catalog.Catalog, o Options)
 			r.Warnings = append(slices.Clone(r.Warnings), "the choice between packs did not settle: prices are those of the last but one round")
 		}
 		r.namePacks()
-		return nil
+		return r.drawLots(ctx, drawn)
 	}
 }
 
-func (r *Report) compareOnce(ctx context.Context, c *catalog.Catalog, o Options) error {
+// compareOnce compares all lots and keeps their draws.
+func (r *Report) compareOnce(ctx context.Context, c *catalog.Catalog, o Options) ([]*doubts, error) {
 	r.Lots = make([]Lot, len(r.Job.Lots))
+	drawn := make([]*doubts, len(r.Lots))
 	group, ctx := errgroup.WithContext(ctx)
 	group.SetLimit(8)
 	for i, lot := range r.Job.Lots {
 		group.Go(func() error {
-			l, err := compareLot(ctx, r.Job, lot, c, r.Book, o.Settings[lot.Name])
+			l, d, err := compareLot(ctx, r.Job, lot, c, r.Book, o)
 			if err != nil {
 				return fmt.Errorf("lot %q: %w", lot.Name, err)
 			}
-			r.Lots[i] = l
+			r.Lots[i], drawn[i] = l, d
 			o.meter.step()
+			return nil
+		})
+	}
+	return drawn, group.Wait()
+}
+
+// drawLots fills in the ranges of all lots.
+func (r *Report) drawLots(ctx context.Context, drawn []*doubts) error {
+	group, ctx := errgroup.WithContext(ctx)
+	group.SetLimit(8)
+	for i, d := range drawn {
+		group.Go(func() error {
+			if err := ctx.Err(); err != nil {
+				return err
+			}
+			if err := d.spread(&r.Lots[i]); err != nil {
+				return fmt.Errorf("lot %q: %w", r.Lots[i].Job.Name, err)
+			}
 			return nil
 		})
 	}

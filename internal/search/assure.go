@@ -1,0 +1,144 @@
+package search
+
+import (
+	"math"
+	"slices"
+
+	"parch/internal/routes"
+	"parch/internal/steps"
+)
+
+// Assurance is the chance of the target that a route needs.
+type Assurance struct {
+	Level  float64 // 0..1
+	Chance func(run *routes.Run) (float64, error)
+}
+
+// Sizes of the search for an aim.
+const (
+	driestAim = 1.0 / 30 // of the limit, the lowest aim that is tried
+	aimTries  = 7        // bisections of ln(aim)
+)
+
+// Assured tightens a tuned run until its chance reaches the assurance. A run is
+// tuned so that with everything at its typical value it just ends at the limit, so
+// half of the draws may miss it. Its last step is therefore sized for an aim of its
+// own under the limit, and a last soak may take another stand: of all stands that
+// can be assured the best by the objective, the hand-overs before it kept. Where
+// nothing helps the run comes back as it was.
+func (t *Tuner) Assured(r routes.Route, run routes.Run, a Assurance) (routes.Run, error) {
+	chance, err := a.Chance(&run)
+	if err != nil || chance >= a.Level {
+		return run, err
+	}
+	starts := []trial{{run: run}}
+	if starts[0].score, err = t.score(&run); err != nil {
+		return run, err
+	}
+	if r[len(r)-1].Kind == steps.Soak {
+		if starts, err = t.otherStands(r, run); err != nil {
+			return run, err
+		}
+	}
+	best := trial{run: run, score: math.Inf(1)}
+	for _, start := range starts { // best first: none comes out better than it went in
+		if start.score >= best.score {
+			break
+		}
+		found, ok, err := t.lifted(r, start, a)
+		if err != nil {
+			return run, err
+		}
+		if ok && found.score < best.score {
+			best = found
+		}
+	}
+	return best.run, nil
+}
+
+// otherStands are the runs with all stands of the last soak that reach the limit in
+// time, the best first.
+func (t *Tuner) otherStands(r routes.Route, run routes.Run) ([]trial, error) {
+	g, err := t.prepare(r)
+	if err != nil {
+		return nil, err
+	}
+	stands, err := g.standsOnOffer()
+	if err != nil {
+		return nil, err
+	}
+	var all []trial
+	for _, stand := range stands {
+		s := cloned(run.Settings)
+		last := len(s.SoakHours) - 1
+		s.SoakHours[last], s.Stirred[last] = stand.hours, stand.stirred
+		other, err := t.Run(r, s)
+		if err == nil {
+			err = t.inTime(&other)
+		}
+		if err != nil || !other.Meets {
+			continue
+		}
+		score, err := t.score(&other)
+		if err != nil {
+			return nil, err
+		}
+		all = append(all, trial{run: other, score: score})
+	}
+	slices.SortStableFunc(all, func(a, b trial) int {
+		switch {
+		case a.score < b.score:
+			return -1
+		case a.score > b.score:
+			return 1
+		}
+		return 0
+	})
+	return all, nil
+}
+
+// lifted finds the highest aim at which a run is sure enough.
+func (t *Tuner) lifted(r routes.Route, start trial, a Assurance) (trial, bool, error) {
+	at := func(aim float64) (found trial, sure bool, err error) {
+		s := cloned(start.run.Settings)
+		s.AimMgPerKg = aim
+		run, err := t.Run(r, s)
+		if err == nil {
+			err = t.inTime(&run)
+		}
+		if err != nil || !run.Meets {
+			return trial{}, false, nil
+		}
+		chance, err := a.Chance(&run)
+		if err != nil {
+			return trial{}, false, err
+		}
+		score, err := t.score(&run)
+		return trial{run: run, score: score}, chance >= a.Level, err
+	}
+	if chance, err := a.Chance(&start.run); err != nil || chance >= a.Level {
+		return start, err == nil, err
+	}
+	limit := t.Case.Goal() * 1e6
+	low, high := significant(limit*driestAim, 2), limit
+	best, sure, err := at(low)
+	if err != nil || !sure {
+		return trial{}, false, err
+	}
+	for range aimTries {
+		aim := significant(math.Sqrt(low*high), 2)
+		if aim <= low || aim >= high {
+			break
+		}
+		found, sure, err := at(aim)
+		if err != nil {
+			return trial{}, false, err
+		}
+		if sure {
+			best, low = found, aim
+		} else {
+			high = aim
+		}
+	}
+	return best, true, nil
+}

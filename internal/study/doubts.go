@@ -1,0 +1,218 @@
+package study
+
+import (
+	"fmt"
+	"math"
+	"slices"
+
+	"github.com/shopspring/decimal"
+
+	"parch/internal/costs"
+	"parch/internal/doubt"
+	"parch/internal/job"
+	"parch/internal/quantity"
+	"parch/internal/routes"
+	"parch/internal/search"
+	"parch/internal/spread"
+)
+
+// searchDraws are those by which settings are made sure. Their number is fixed, so
+// that settings do not depend on how many draws the ranges take.
+const searchDraws = 500
+
+// searchMargin is how far above the assurance the search goes with so few.
+const searchMargin = 0.015
+
+// doubts are the draws of a lot; nil where none are asked for.
+type doubts struct {
+	search, all *doubt.Lot
+	limit       float64 // kg/kg; NaN where the target cannot be shown
+	assurance   float64
+}
+
+func newDoubts(k *routes.Case, book costs.Book, site *costs.Arrangement, o Options) (*doubts, error) {
+	if o.Draws == 0 {
+		return nil, nil
+	}
+	d := &doubts{limit: k.Limit.AcceptAt, assurance: k.Job.Assurance}
+	var err error
+	if d.search, err = doubt.New(k, book, site, searchDraws, o.Seed); err != nil {
+		return nil, err
+	}
+	if d.all, err = doubt.New(k, book, site, o.Draws, o.Seed); err != nil {
+		return nil, err
+	}
+	d.all.Like(d.search)
+	return d, nil
+}
+
+// sure tightens a run until it is sure enough, where that can be.
+func (d *doubts) sure(t *search.Tuner, r routes.Route, run routes.Run) (routes.Run, error) {
+	if d == nil || !run.Meets || math.IsNaN(d.limit) {
+		return run, nil
+	}
+	level := math.Min(d.assurance+searchMargin, (1+d.assurance)/2)
+	return t.Assured(r, run, search.Assurance{Level: level, Chance: func(run *routes.Run) (float64, error) { return d.search.Chance(run, d.limit) }})
+}
+
+// judge finds the chances of the routes, and what a miss is expected to cost.
+func (d *doubts) judge(all []Route, failed *job.FailedBatch) error {
+	if d == nil || math.IsNaN(d.limit) {
+		return nil
+	}
+	for i := range all {
+		r := &all[i]
+		chance, err := d.all.Chance(&r.Run, d.limit)
+		if err != nil {
+			return fmt.Errorf("%s: %w", r.ID, err)
+		}
+		r.Range = &Range{Chance: &chance}
+		r.Recommended = r.Run.Meets && chance >= d.assurance
+		if r.Run.Meets && !r.Recommended {
+			r.WhyNot = fmt.Sprintf("its chance of the target, %s, is under the assurance of %s", quantity.FormatShare(math.Round(1000*chance)/1000), quantity.FormatShare(d.assurance))
+		}
+		if failed != nil {
+			perBatch := failed.Amount.Mul(decimal.NewFromFloat(1 - chance)).Round(2)
+			r.Miss = &Miss{PerBatch: perBatch, PerLitre: perBatch.DivRound(decimal.NewFromFloat(r.Run.LitresDelivered), 6)}
+		}
+	}
+	return nil
+}
+
+// spread fills in the ranges of the routes.
+func (d *doubts) spread(l *Lot) error {
+	if d == nil {
+		return nil
+	}
+	outcomes := make([]*doubt.Outcome, len(l.Routes))
+	for i := range l.Routes {
+		r := &l.Routes[i]
+		o, err := d.all.Through(&r.Run)
+		if err != nil {
+			return fmt.Errorf("%s: %w", r.ID, err)
+		}
+		outcomes[i] = o
+		if r.Range == nil {
+			r.Range = &Range{}
+		}
+		r.Range.Water, r.Range.Hours = spread.BandOf(capped(o.Water, l.Job.Water)), spread.BandOf(o.Hours)
+		if o.CostPerLitre != nil {
+			band := spread.BandOf(o.CostPerLitre)
+			r.Range.CostPerLitre = &band
+		}
+	}
+	d.cheapest(l, outcomes)
+	d.movers(l, outcomes)
+	return nil
+}
+
+// capped shows a draw in which a route fails as a lot that is as wet as it came.
+func capped(water []float64, start float64) []float64 {
+	out := slices.Clone(water)
+	for i, w := range out {
+		if math.IsInf(w, 1) {
+			out[i] = start
+		}
+	}
+	return out
+}
+
+// cheapest counts for each route the draws in which it costs least among those that
+// reach the limit.
+func (d *doubts) cheapest(l *Lot, outcomes []*doubt.Outcome) {
+	if math.IsNaN(d.limit) {
+		return
+	}
+	wins := make([]int, len(outcomes))
+	for i := range d.all.Draws() {
+		best := -1
+		for k, o := range outcomes {
+			if o.CostPerLitre == nil || o.Water[i] > d.limit*(1+1e-9) {
+				continue
+			}
+			if best < 0 || o.CostPerLitre[i] < outcomes[best].CostPerLitre[i] {
+				best = k
+			}
+		}
+		if best >= 0 {
+			wins[best]++
+		}
+	}
+	for k, n := range wins {
+		l.Routes[k].Range.CheapestShare = float64(n) / float64(d.all.Draws())
+	}
+}
+
+// Movers shown of each result, and the weakest correlation that is told.
+const (
+	mostMovers  = 3
+	leastMoving = 0.1
+)
+
+// movers ranks what moves the results of each route, and for the lot what moves
+// those of the best.
+func (d *doubts) movers(l *Lot, outcomes []*doubt.Outcome) {
+	inputs := d.all.Inputs()
+	ranks := make([]spread.Ranks, len(inputs))
+	for k := range inputs {
+		ranks[k] = spread.RanksOf(d.all.Column(inputs[k].Name))
+	}
+	for i, o := range outcomes {
+		r := &l.Routes[i]
+		for _, result := range []struct {
+			of     string
+			values []float64
+		}{{MovesWater, o.Water}, {MovesCost, o.CostPerLitre}, {MovesHours, o.Hours}} {
+			if result.values == nil {
+				continue
+			}
+			var all []Mover
+			mine := spread.RanksOf(result.values)
+			for k, in := range inputs {
+				if c := ranks[k].Correlation(mine); math.Abs(c) >= leastMoving {
+					all = append(all, Mover{Of: result.of, Input: in.Name, Why: in.Why, Correlation: c})
+				}
+			}
+			strongestFirst(all)
+			r.Range.Movers = append(r.Range.Movers, all[:min(len(all), mostMovers)]...)
+		}
+	}
+	if best := l.Best(); best != nil && best.Range != nil {
+		l.Doubts = largest(best.Range.Movers)
+	}
+}
+
+func strongestFirst(all []Mover) {
+	slices.SortStableFunc(all, func(a, b Mover) int {
+		switch x, y := math.Abs(a.Correlation), math.Abs(b.Correlation); {
+		case x > y:
+			return -1
+		case x < y:
+			return 1
+		}
+		return 0
+	})
+}
+
+// largest are the three inputs that move water or cost most.
+func largest(movers []Mover) (three []Mover) {
+	all := slices.DeleteFunc(slices.Clone(movers), func(m Mover) bool { return m.Of == MovesHours })
+	strongestFirst(all)
+	for _, m := range all {
+		if len(three) < 3 && !slices.ContainsFunc(three, func(t Mover) bool { return t.Input == m.Input }) {
+			three = append(three, m)
+		}
+	}
+	return three
+}
+
+// unsure warns where no route that reaches the limit is sure enough.
+func (l *Lot) unsure(d *doubts) {
+	if d == nil || math.IsNaN(d.limit) || len(l.Routes) == 0 || !l.Routes[0].Meets() {
+		return
+	}
+	if slices.ContainsFunc(l.Routes, func(r Route) bool { return r.Recommended }) {
+		return
+	}
+	l.Warnings = append(l.Warnings, fmt.Sprintf("no route is sure enough: none reaches the target with a chance of %s; the first of the ranking stands for want of a better one", quantity.FormatShare(d.assurance)))
+}
