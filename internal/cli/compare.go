@@ -5,6 +5,7 @@ import (
 	"context"
 	"errors"
 	"fmt"
+	"math"
 	"path/filepath"
 	"slices"
 	"strings"
@@ -14,11 +15,20 @@ import (
 	"parch/catalog"
 	"parch/internal/job"
 	"parch/internal/report"
+	"parch/internal/spread"
 	"parch/internal/study"
 	"parch/internal/workbook"
 )
 
 const defaultWorkbook = "drying-routes.xlsx"
+
+// Draws that are made where no other number is asked for, and the fewest that say
+// anything of a twentieth.
+const (
+	usualDraws = 2000
+	usualSeed  = 1
+	leastDraws = 100
+)
 
 func (p *program) compare() *cli.Command {
 	return command(cli.Command{
@@ -35,8 +45,8 @@ func (p *program) compare() *cli.Command {
 			&cli.StringFlag{Name: "csv", Usage: "write buying.csv, bills.csv and routes.csv into the folder `DIR`"},
 			&cli.StringFlag{Name: "settings-from", Usage: "take the settings from the JSON `F` of an earlier run"},
 			onOff("force", "write over files that are there already"),
-			&cli.UintFlag{Name: "draws", Usage: "draws of the uncertain inputs, `N`; not used yet"},
-			&cli.Uint64Flag{Name: "seed", Usage: "seed of the draws, `N`; not used yet"},
+			&cli.UintFlag{Name: "draws", Value: usualDraws, Usage: "take the plans through `N` draws of what is not known exactly; 0: none"},
+			&cli.Uint64Flag{Name: "seed", Value: usualSeed, Usage: "seed of the draws, `N`"},
 			&cli.StringFlag{Name: "explain", Usage: "print how every number of `ROUTE` came about, in place of the ranking"},
 			onOff("all", "print every route, not only the first of a lot"),
 			onOff("quiet", "print errors only"),
@@ -59,16 +69,12 @@ func (p *program) runCompare(c *cli.Context) error {
 	if err := q.complete(c); err != nil {
 		return err
 	}
-	for _, name := range []string{"draws", "seed"} {
-		if c.IsSet(name) && !q.quiet {
-			fmt.Fprintf(p.stderr, "--%s: not used yet\n", name)
-		}
-	}
 	j, cat, jobErr := p.readJob(c, q.job, q.demo)
 	opts, settingsErr := p.readSettings(q.settings)
 	if err := errors.Join(q.outputsFree(), jobErr, settingsErr); err != nil {
 		return err
 	}
+	opts.Draws, opts.Seed = int(c.Uint("draws")), c.Uint64("seed")
 	done, stop := p.progressBar(q.quiet)
 	opts.Progress = done
 	r, err := study.Compare(c.Context, j, cat, opts)
@@ -94,6 +100,12 @@ func (q *request) complete(c *cli.Context) (err error) {
 		if q.job, err = oneArgument(c, "a job file, or --demo"); err != nil {
 			return err
 		}
+	}
+	if n := c.Uint("draws"); n > spread.MaxDraws || n > 0 && n < leastDraws {
+		return misused(fmt.Sprintf("--draws %d: 0 or %d to %d are allowed", n, leastDraws, spread.MaxDraws), "")
+	}
+	if seed := c.Uint64("seed"); seed > math.MaxInt64 {
+		return misused(fmt.Sprintf("--seed %d: 0 to %d are allowed", seed, int64(math.MaxInt64)), "")
 	}
 	if ext := filepath.Ext(q.workbook); !strings.EqualFold(ext, ".xlsx") {
 		return misused(fmt.Sprintf("--workbook %s: the name of a workbook ends in .xlsx", q.workbook), "")

@@ -50,6 +50,8 @@ type routeOut struct {
 	Label           string                          `json:"label"`
 	Rank            *int                            `json:"rank"`
 	MeetsTarget     bool                            `json:"meets_target"`
+	Recommended     bool                            `json:"recommended"`
+	WhyNot          string                          `json:"why_not_recommended,omitempty"`
 	WaterOut        number                          `json:"water_out_mg_per_kg"`
 	WaterOutLow     *number                         `json:"water_out_low_mg_per_kg"`
 	WaterOutHigh    *number                         `json:"water_out_high_mg_per_kg"`
@@ -66,6 +68,8 @@ type routeOut struct {
 	CostPerLitre    *decimal.Decimal                `json:"cost_per_litre"`
 	CostPerLitreLow *decimal.Decimal                `json:"cost_per_litre_low"`
 	CostPerLitreHi  *decimal.Decimal                `json:"cost_per_litre_high"`
+	CheapestShare   *number                         `json:"cheapest_share,omitempty"`
+	ExpectedMiss    *decimal.Decimal                `json:"expected_cost_of_missing,omitempty"` // per batch, no part of cost_per_batch
 	CostByHead      map[steps.Head]*decimal.Decimal `json:"cost_by_head"`
 	Settings        routes.Settings                 `json:"settings"`
 	Steps           []stepOut                       `json:"steps"`
@@ -205,7 +209,10 @@ func showRoute(r *study.Route) routeOut {
 		Steps:         make([]stepOut, len(run.Outcomes)),
 		Cautions:      make([]cautionOut, len(r.Cautions)),
 		Warnings:      append(append([]string{}, warningsOf(r)...), r.Bill.Doubts...),
+		Recommended:   r.Recommended,
+		WhyNot:        r.WhyNot,
 	}
+	out.ranges(r)
 	if r.Rank > 0 {
 		out.Rank = &r.Rank
 	}

@@ -44,11 +44,12 @@ func (p *page) verdict(r *study.Report, l *study.Lot) {
 		p.say(3, 0, "%s, but none can be ranked by cost: no price for %s. Give those prices in the job; the order below says nothing.",
 			count(float64(len(reach)), "route reaches the limit", "routes reach the limit"), strings.Join(reach[0].Bill.NoPrice, ", "))
 	case len(reach) > 0:
-		best := reach[0]
-		p.say(3, 0, "Best: %s (%s). %s", best.Label, best.ID, reason(r, reach))
+		best := l.Best()
+		p.say(3, 0, "Best: %s (%s). %s", best.Label, best.ID, reason(r, sureEnough(reach)))
 		p.say(3, 0, "It leaves %s after %s of attended work, %s in all.", quantity.FormatWater(best.Run.WaterOut),
 			hours(best.Run.HoursAttended), hours(best.Run.HoursTotal))
 		p.year(r, best)
+		p.sure(r, l)
 	case l.CannotShow != "" && len(miss) > 0:
 		p.say(3, 0, "No route can be shown to reach the target. The nearest, %s, is computed to leave %s.", miss[0].ID, quantity.FormatWater(miss[0].Run.WaterOut))
 	case len(miss) > 0:
@@ -62,9 +63,13 @@ func (p *page) verdict(r *study.Report, l *study.Lot) {
 func reason(r *study.Report, reach []*study.Route) string {
 	best := reach[0]
 	aim, value := objective(r.Job.Objective, r.Job.Currency)
-	text := fmt.Sprintf("It has %s of %s: %s.", aim, count(float64(len(reach)), "route that reaches the limit", "routes that reach the limit"), value(best))
+	one, many := "route that reaches the limit", "routes that reach the limit"
+	if best.Recommended {
+		one, many = one+" and is sure enough", many+" and are sure enough"
+	}
+	text := fmt.Sprintf("It has %s of %s: %s.", aim, count(float64(len(reach)), one, many), value(best))
 	if len(reach) == 1 {
-		text = fmt.Sprintf("It is the only route that reaches the limit, at %s.", value(best))
+		text = fmt.Sprintf("It is the only %s, at %s.", one, value(best))
 	}
 	if head, share := largestHead(best); share > 0 {
 		text += fmt.Sprintf(" %s is %s of its cost.", headNames[head], quantity.FormatShare(math.Round(100*share)/100))
@@ -154,6 +159,9 @@ func (p *page) ranking(r *study.Report, l *study.Lot) {
 		{"Energy\nkWh", true, 0}, {"Lost\nL", true, 0}, {"A batch\n" + r.Job.Currency, true, 0}, {"A litre\n" + r.Job.Currency, true, 0},
 	}
 	reach, hidden := p.first(reach, firstRanked)
+	if r.Draws > 0 {
+		columns = append(columns, column{"Chance\n%", true, 0})
+	}
 	rows := make([][]string, len(reach))
 	for i, route := range reach {
 		run := &route.Run
@@ -161,6 +169,9 @@ func (p *page) ranking(r *study.Report, l *study.Lot) {
 			strconv.Itoa(route.Rank), brokenAtPlus(route.ID, routeColumns), mgKg(run.WaterOut), quantity.Significant(run.HoursAttended, 3),
 			quantity.Significant(run.HoursTotal, 3), quantity.Significant(run.EnergyKWh, 3), quantity.Significant(run.SolventLostL, 2),
 			marked(route, route.Bill.PerBatch), marked(route, route.Bill.WrittenPerLitre()),
+		}
+		if r.Draws > 0 {
+			rows[i] = append(rows[i], chanceCell(r, route))
 		}
 	}
 	p.line("")
