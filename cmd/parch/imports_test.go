@@ -19,6 +19,7 @@ var floors = []string{
 	"parch/internal/bench",
 	"parch/internal/study",
 	"parch/internal/search",
+	"parch/internal/doubt",
 	"parch/internal/spread",
 	"parch/internal/costs",
 	"parch/internal/routes",

@@ -1,8 +1,10 @@
 package doubt
 
 import (
+	"errors"
 	"fmt"
 	"math"
+	"slices"
 
 	"parch/internal/routes"
 	"parch/internal/steps"
@@ -36,18 +38,59 @@ func (l *Lot) start(run *routes.Run) *flow {
 	return f
 }
 
-// through carries a run through all its stages. Without accounts only the water
-// counts.
-func (l *Lot) through(run *routes.Run, accounts bool) (*flow, error) {
+// through carries a run through all its stages with their accounts.
+func (l *Lot) through(run *routes.Run) (*flow, error) {
 	f := l.start(run)
-	for place := range run.Route {
+	err := f.upTo(len(run.Route), true)
+	return f, errors.Join(err, l.err)
+}
+
+// wet carries a run through its stages for the water alone. What stands before the
+// last stage is remembered: a search changes that stage only, and many routes share
+// what goes before.
+func (l *Lot) wet(run *routes.Run) (*flow, error) {
+	last := len(run.Route) - 1
+	key := ahead(run, last)
+	f := &flow{lot: l, run: run}
+	known, ok := l.ahead[key]
+	if !ok {
+		f = l.start(run)
+		if err := f.upTo(last, false); err != nil {
+			return nil, err
+		}
+		known = wetness{f.water, f.kg}
+		l.ahead[key] = known
+	}
+	f.water, f.kg = slices.Clone(known.water), slices.Clone(known.kg)
+	_, err := f.stage(last, false)
+	return f, errors.Join(err, l.err)
+}
+
+// wetness is the water (kg/kg) and the solvent (kg) of a lot in each draw.
+type wetness struct{ water, kg []float64 }
+
+// ahead tells apart what stands before a place.
+func ahead(run *routes.Run, place int) string {
+	key := run.Route[:place].ID()
+	if place > 0 {
+		key += fmt.Sprint(run.Route[place].Kind, run.Settings.Stages, run.Settings.Receiver, run.Settings.ReceiverC)
+	}
+	for i := range place {
+		o := &run.Outcomes[i]
+		key += fmt.Sprint(" ", o.In, o.Out, o.AgentKg, o.HoursTotal)
+	}
+	return key
+}
+
+func (f *flow) upTo(places int, accounts bool) error {
+	for place := len(f.turns); place < places; place++ {
 		t, err := f.stage(place, accounts)
 		if err != nil {
-			return nil, fmt.Errorf("%s: %w", run.Route[place].Kind, err)
+			return fmt.Errorf("%s: %w", f.run.Route[place].Kind, err)
 		}
 		f.turns = append(f.turns, t)
 	}
-	return f, l.err
+	return nil
 }
 
 func (f *flow) stage(place int, accounts bool) (turn, error) {

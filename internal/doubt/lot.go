@@ -29,6 +29,7 @@ type Lot struct {
 	nodes   map[float64]*nodes
 	boiled  map[string]*surface
 	holds   map[float64]*steps.Solubilities // by temperature
+	ahead   map[string]wetness
 	err     error
 }
 
@@ -37,7 +38,7 @@ func New(k *routes.Case, book costs.Book, site *costs.Arrangement, n int, seed u
 	if n < 1 || n > spread.MaxDraws {
 		return nil, fmt.Errorf("%d draws: 1 to %d are allowed", n, spread.MaxDraws)
 	}
-	l := &Lot{Case: k, Book: book, Site: site, n: n, seed: seed, columns: map[string][]float64{}, nodes: map[float64]*nodes{}, boiled: map[string]*surface{}, holds: map[float64]*steps.Solubilities{}}
+	l := &Lot{Case: k, Book: book, Site: site, n: n, seed: seed, columns: map[string][]float64{}, nodes: map[float64]*nodes{}, boiled: map[string]*surface{}, holds: map[float64]*steps.Solubilities{}, ahead: map[string]wetness{}}
 	pair, trend := l.column(l.pair()), l.column(l.trend())
 	l.asides = make([]steps.Aside, n)
 	for i := range l.asides {

@@ -17,7 +17,7 @@ type Outcome struct {
 
 // Through takes a plan through all draws.
 func (l *Lot) Through(run *routes.Run) (*Outcome, error) {
-	f, err := l.through(run, true)
+	f, err := l.through(run)
 	if err != nil {
 		return nil, err
 	}
@@ -30,7 +30,7 @@ func (l *Lot) Through(run *routes.Run) (*Outcome, error) {
 
 // Chance is the share of the draws in which a plan ends at or below the limit.
 func (l *Lot) Chance(run *routes.Run, limit float64) (float64, error) {
-	f, err := l.through(run, false)
+	f, err := l.wet(run)
 	if err != nil {
 		return 0, err
 	}

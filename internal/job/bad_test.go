@@ -43,7 +43,7 @@ func TestBadValues(t *testing.T) {
 		{sound, "- lots\n", `job.yaml:1: keys with values are wanted here, this is a list`},
 		// unknown and doubled keys
 		{"  batch", "  volume", `job.yaml:2: lots[0]: "batch" is missing` + "\n" + `job.yaml:3: lots[0]: unknown key "volume"`},
-		{"  batch", "  batc: 1 L\n  batch", `job.yaml:3: lots[0]: unknown key "batc"; did you mean "batch" or "batches"?`},
+		{"  batch", "  batc: 1 L\n  batch", `job.yaml:3: lots[0]: unknown key "batc"; did you mean "batch" or "batches" or "failed batch"?`},
 		{"lots:", "currancy: EUR\nlots:", `job.yaml:1: unknown key "currancy"; did you mean "currency"?`},
 		{"  batch", "  batch: 1 L\n  batch", `job.yaml:4: lots[0]: "batch" stands twice; it is already on line 3`},
 		// units

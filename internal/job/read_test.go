@@ -83,7 +83,6 @@ func TestEveryKey(t *testing.T) {
 			},
 		},
 		Warnings: []string{
-			"job.yaml:4: assurance: not used yet",
 			"job.yaml:5: catalog[0]: not read here: the built-in catalog is used",
 			`job.yaml:8: prices[1].water: "ppm" read as mg/kg (by mass)`,
 			"job.yaml:16: accept.carriers: not used yet",

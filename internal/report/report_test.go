@@ -67,7 +67,7 @@ func TestJSON(t *testing.T) {
 const (
 	documentKeys = "parch catalog_date seed draws currency lots purchases"
 	lotKeys      = "name solvent batch_l batches_per_year water_in_mg_per_kg target_mg_per_kg accept_at_or_below_mg_per_kg routes excluded break_even"
-	routeKeys    = "id label rank meets_target water_out_mg_per_kg water_out_low_mg_per_kg water_out_high_mg_per_kg chance_of_target " +
+	routeKeys    = "id label rank meets_target recommended water_out_mg_per_kg water_out_low_mg_per_kg water_out_high_mg_per_kg chance_of_target " +
 		"hours_total hours_attended energy_kwh cooling_water_l solvent_lost_l agent_kg waste_kg co2e_kg cost_per_batch cost_per_litre " +
 		"cost_per_litre_low cost_per_litre_high cost_by_head settings steps cautions warnings"
 	stepKeys = "kind agent carrier water_in_mg_per_kg water_out_mg_per_kg floor_mg_per_kg why_it_stops hours_total hours_attended " +
