@@ -28,15 +28,23 @@ func (l *Lot) Through(run *routes.Run) (*Outcome, error) {
 	return o, l.err
 }
 
-// Chance is the share of the draws in which a plan ends at or below the limit.
-func (l *Lot) Chance(run *routes.Run, limit float64) (float64, error) {
+// Limits are what a product must keep to, kg/kg.
+type Limits struct{ Least, Most float64 }
+
+// Met reports whether a product keeps to them.
+func (s Limits) Met(water float64) bool {
+	return water <= s.Most*(1+1e-9) && water >= s.Least*(1-1e-9)
+}
+
+// Chance is the share of the draws in which a plan keeps to the limits.
+func (l *Lot) Chance(run *routes.Run, limits Limits) (float64, error) {
 	f, err := l.wet(run)
 	if err != nil {
 		return 0, err
 	}
 	met := 0
 	for _, w := range f.water {
-		if w <= limit*(1+1e-9) {
+		if limits.Met(w) {
 			met++
 		}
 	}
@@ -53,14 +61,35 @@ func (f *flow) hours() []float64 {
 	}
 	test0 := f.lot.Case.Catalog.Practice["karl-fischer-time"].SI
 	test := f.lot.practice("karl-fischer-time")
+	attended := f.attended()
 	for i := range all {
-		h := f.run.HoursTotal + tests*(test[i]/test0-1)
+		h := f.run.HoursTotal - f.run.HoursWaiting + f.lot.Case.WaitingFor(attended[i]) + tests*(test[i]/test0-1)
 		for place, t := range f.turns {
 			if t.hours != nil {
 				h += t.hours[i] - f.run.Outcomes[place].HoursTotal
 			}
 		}
 		all[i] = h
+	}
+	return all
+}
+
+// attended hours of the whole route.
+func (f *flow) attended() []float64 {
+	all := make([]float64, f.lot.n)
+	seen := map[int]bool{}
+	for _, u := range f.run.Uses {
+		if u.Item != "technician" {
+			continue
+		}
+		now := f.quantity(u, seen)
+		for i := range all {
+			if now != nil {
+				all[i] += now[i]
+			} else {
+				all[i] += u.Quantity
+			}
+		}
 	}
 	return all
 }

@@ -244,3 +244,8 @@ func (c *Case) WithPractice(facts map[string]float64) *Case {
 	under.Catalog, under.known = &cat, map[stepKey]result{}
 	return &under
 }
+
+// WaitingFor is how long a lot waits for people with so many attended hours.
+func (c *Case) WaitingFor(attendedH float64) float64 {
+	return waiting(attendedH, c.Job.Site.AttendedSecondsPerDay/3600)
+}

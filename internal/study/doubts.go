@@ -26,7 +26,7 @@ const searchMargin = 0.015
 // doubts are the draws of a lot; nil where none are asked for.
 type doubts struct {
 	search, all *doubt.Lot
-	limit       float64 // kg/kg; NaN where the target cannot be shown
+	limits      doubt.Limits // Most is NaN where the target cannot be shown
 	assurance   float64
 }
 
@@ -34,7 +34,7 @@ func newDoubts(k *routes.Case, book costs.Book, site *costs.Arrangement, o Optio
 	if o.Draws == 0 {
 		return nil, nil
 	}
-	d := &doubts{limit: k.Limit.AcceptAt, assurance: k.Job.Assurance}
+	d := &doubts{limits: doubt.Limits{Least: k.AcceptFrom(), Most: k.Limit.AcceptAt}, assurance: k.Job.Assurance}
 	var err error
 	if d.search, err = doubt.New(k, book, site, searchDraws, o.Seed); err != nil {
 		return nil, err
@@ -48,21 +48,21 @@ func newDoubts(k *routes.Case, book costs.Book, site *costs.Arrangement, o Optio
 
 // sure tightens a run until it is sure enough, where that can be.
 func (d *doubts) sure(t *search.Tuner, r routes.Route, run routes.Run) (routes.Run, error) {
-	if d == nil || !run.Meets || math.IsNaN(d.limit) {
+	if d == nil || !run.Meets || math.IsNaN(d.limits.Most) {
 		return run, nil
 	}
 	level := math.Min(d.assurance+searchMargin, (1+d.assurance)/2)
-	return t.Assured(r, run, search.Assurance{Level: level, Chance: func(run *routes.Run) (float64, error) { return d.search.Chance(run, d.limit) }})
+	return t.Assured(r, run, search.Assurance{Level: level, Chance: func(run *routes.Run) (float64, error) { return d.search.Chance(run, d.limits) }})
 }
 
 // judge finds the chances of the routes, and what a miss is expected to cost.
 func (d *doubts) judge(all []Route, failed *job.FailedBatch) error {
-	if d == nil || math.IsNaN(d.limit) {
+	if d == nil || math.IsNaN(d.limits.Most) {
 		return nil
 	}
 	for i := range all {
 		r := &all[i]
-		chance, err := d.all.Chance(&r.Run, d.limit)
+		chance, err := d.all.Chance(&r.Run, d.limits)
 		if err != nil {
 			return fmt.Errorf("%s: %w", r.ID, err)
 		}
@@ -120,14 +120,14 @@ func capped(water []float64, start float64) []float64 {
 // cheapest counts for each route the draws in which it costs least among those that
 // reach the limit.
 func (d *doubts) cheapest(l *Lot, outcomes []*doubt.Outcome) {
-	if math.IsNaN(d.limit) {
+	if math.IsNaN(d.limits.Most) {
 		return
 	}
 	wins := make([]int, len(outcomes))
 	for i := range d.all.Draws() {
 		best := -1
 		for k, o := range outcomes {
-			if o.CostPerLitre == nil || o.Water[i] > d.limit*(1+1e-9) {
+			if o.CostPerLitre == nil || !d.limits.Met(o.Water[i]) {
 				continue
 			}
 			if best < 0 || o.CostPerLitre[i] < outcomes[best].CostPerLitre[i] {
@@ -208,7 +208,7 @@ func largest(movers []Mover) (three []Mover) {
 
 // unsure warns where no route that reaches the limit is sure enough.
 func (l *Lot) unsure(d *doubts) {
-	if d == nil || math.IsNaN(d.limit) || len(l.Routes) == 0 || !l.Routes[0].Meets() {
+	if d == nil || math.IsNaN(d.limits.Most) || len(l.Routes) == 0 || !l.Routes[0].Meets() {
 		return
 	}
 	if slices.ContainsFunc(l.Routes, func(r Route) bool { return r.Recommended }) {
