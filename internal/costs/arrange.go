@@ -16,12 +16,9 @@ import (
 // leastCharge is the item whose price is the least that a collection costs.
 const leastCharge = "waste-minimum"
 
-// Figures of a bench chiller, from memory: it draws 0.4 to 1.0 kWh for a kWh of
-// heat; one that is priced by the job but not in the catalog serves about ten years.
-const (
-	chillerDraw  = 0.7
-	chillerYears = 10
-)
+// chillerYears is how long a chiller serves that is priced by the job but not in
+// the catalog (from memory).
+const chillerYears = 10
 
 const secondsPerYear = 365.25 * 86400
 
@@ -42,8 +39,8 @@ type Arrangement struct {
 }
 
 type chiller struct {
-	key      string
-	coolingW float64
+	key             string
+	coolingW, drawW float64
 }
 
 // piece is what a year of a piece of apparatus is worth, as shares of its price.
@@ -70,8 +67,8 @@ func NewArrangement(cat *catalog.Catalog, j *job.Job) *Arrangement {
 	}
 	for key, app := range cat.Apparatus {
 		a.pieces[key] = a.piece(app, slices.Contains(j.Equipment, job.Equipment{Item: key, Owned: true}))
-		if app.Kind == "chiller" && app.Cooling != nil {
-			a.chillers = append(a.chillers, chiller{key, app.Cooling.SI})
+		if app.Kind == "chiller" && app.Cooling != nil && app.Power != nil {
+			a.chillers = append(a.chillers, chiller{key, app.Cooling.SI, app.Power.SI})
 		}
 	}
 	slices.SortFunc(a.chillers, func(x, y chiller) int {
@@ -135,7 +132,7 @@ func onceEach(uses []routes.StageUse) []routes.StageUse {
 // cool replaces the cooling water of a stage where a chiller or a loop takes the
 // heat. That heat is what the heater brings into the liquid.
 func (a *Arrangement) cool(run *routes.Run, water routes.StageUse) []routes.StageUse {
-	if a.cooling != job.Chiller && a.cooling != job.Loop {
+	if a.cooling != job.Loop && (a.cooling != job.Chiller || len(a.chillers) == 0) {
 		return []routes.StageUse{water}
 	}
 	heatKWh := 0.0
@@ -153,49 +150,50 @@ func (a *Arrangement) cool(run *routes.Run, water routes.StageUse) []routes.Stag
 			Basis: "heat to the cooling loop: heater energy x share that reaches the liquid"}
 		return []routes.StageUse{water}
 	}
-	drawn := heatKWh * chillerDraw
+	dutyW := a.dutyW(run, water.Stage, heatKWh)
+	c, count := a.chillerFor(dutyW)
+	draw := c.drawW / c.coolingW
+	drawn := heatKWh * draw
 	run.EnergyKWh += drawn
 	run.CO2eKg += drawn * a.gridKgPerKW
 	if at := water.Stage - 1; at >= 0 && at < len(run.Outcomes) {
 		run.Outcomes[at].EnergyKWh += drawn
 	}
 	water.Use = steps.Use{Head: steps.CoolingWater, Item: "electricity", Unit: "kwh", Quantity: drawn,
-		Basis: fmt.Sprintf("chiller: %.2g kWh a kWh of heat (0.4 to 1.0, from memory); heat = heater energy x share that reaches the liquid", chillerDraw)}
-	return append([]routes.StageUse{water}, a.chillerWear(run, water.Stage, heatKWh)...)
+		Basis: fmt.Sprintf("chiller: %.2g kWh a kWh of heat, the draw of a %.0f W unit over its cooling; heat = heater energy x share that reaches the liquid", draw, c.coolingW)}
+	return append([]routes.StageUse{water}, a.chillerWear(water.Stage, c, count, dutyW)...)
 }
 
-// chillerWear is the share of the chiller that takes the duty of a stage: the one
-// that the job prices, or the smallest of the catalog that does; several of the
-// largest where none does.
-func (a *Arrangement) chillerWear(run *routes.Run, stage int, heatKWh float64) []routes.StageUse {
-	use := func(item string, share float64, basis string) []routes.StageUse {
-		if share == 0 {
-			return nil
-		}
-		return []routes.StageUse{{Stage: stage, Use: steps.Use{Head: steps.Equipment, Item: item, Unit: "each", Quantity: share, PerYear: true,
-			Basis: basis + "; a year's share over the batches of the lot"}}}
-	}
-	if a.priced["chiller"] {
-		return use("chiller", a.chillerShare(), fmt.Sprintf("over %d years (from memory)", chillerYears))
-	}
-	if len(a.chillers) == 0 {
-		return nil
-	}
-	dutyW := a.dutyW(run, stage, heatKWh)
-	chosen := a.chillers[len(a.chillers)-1]
+// chillerFor is the smallest chiller of the catalog that takes a duty, or several
+// of the largest where none does.
+func (a *Arrangement) chillerFor(dutyW float64) (c chiller, count int) {
 	for _, c := range a.chillers {
 		if c.coolingW >= dutyW {
-			chosen = c
-			break
+			return c, 1
 		}
 	}
-	count := math.Max(1, math.Ceil(dutyW/chosen.coolingW))
-	p := a.pieces[chosen.key]
-	basis := "owned"
-	if !p.owned {
-		basis = fmt.Sprintf("bought for a duty of %.3g W, over %.3g years", dutyW, p.years)
+	c = a.chillers[len(a.chillers)-1]
+	return c, int(math.Ceil(dutyW / c.coolingW))
+}
+
+// chillerWear is the share of the chiller: the one that the job prices, or that of
+// the catalog.
+func (a *Arrangement) chillerWear(stage int, c chiller, count int, dutyW float64) []routes.StageUse {
+	item, share := "chiller", a.chillerShare()
+	basis := fmt.Sprintf("over %d years (from memory)", chillerYears)
+	if !a.priced["chiller"] {
+		p := a.pieces[c.key]
+		item, share = c.key, float64(count)*(p.breakage+p.writeOff)
+		basis = "owned"
+		if !p.owned {
+			basis = fmt.Sprintf("%d bought for a duty of %.0f W, over %.3g years", count, dutyW, p.years)
+		}
 	}
-	return use(chosen.key, count*(p.breakage+p.writeOff), basis)
+	if share == 0 {
+		return nil
+	}
+	return []routes.StageUse{{Stage: stage, Use: steps.Use{Head: steps.Equipment, Item: item, Unit: "each", Quantity: share, PerYear: true,
+		Basis: basis + "; a year's share over the batches of the lot"}}}
 }
 
 // dutyW is the heat that a stage hands to its condenser while it boils, or its

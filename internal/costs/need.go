@@ -24,6 +24,7 @@ type Need struct {
 	Losses     float64 // solvent made up for what is lost
 	AtOnce     float64 // of it for the first batch
 	LaterYears float64 // a year after the first
+	Takings    []Taking
 }
 
 // Year is process and losses together.
@@ -39,6 +40,7 @@ func Needs(plans []Plan) []Need {
 			n.Item, n.Unit = item, own.Unit
 			n.Process, n.Losses = n.Process+own.Process, n.Losses+own.Losses
 			n.AtOnce, n.LaterYears = n.AtOnce+own.AtOnce, n.LaterYears+own.LaterYears
+			n.Takings = append(n.Takings, own.Takings...)
 			all[item] = n
 		}
 	}
@@ -61,13 +63,16 @@ func (p Plan) needs() map[string]Need {
 		switch {
 		case use.Head == steps.SolventLost:
 			n.Losses += year
+			n.Takings = append(n.Takings, Taking{PerYear: year})
 		case use.Head == steps.Agent:
 			charge := max(p.charge(use), use.Quantity)
 			n.AtOnce += charge
 			n.Process += max(year, charge) // the first charge is bought whole, however long it serves
+			n.Takings = append(n.Takings, Taking{charge, year})
 		case use.Head == steps.Purchase, use.Head == steps.Testing && use.Item != "technician":
-			n.Process += year
+			n.Process += max(year, use.Quantity) // no part of a batch is made
 			n.AtOnce += use.Quantity
+			n.Takings = append(n.Takings, Taking{use.Quantity, year})
 		default:
 			continue
 		}

@@ -46,10 +46,11 @@ type Order struct {
 	Count    int // packs; 1 where any amount can be had, of Amount
 	Amount   decimal.Decimal
 	Cost     decimal.Decimal
-	OrderDay int // of the first
-	NeedDay  int // on which the first must be there
-	Every    int // days between deliveries; 0 where there is one
-	Each     int // packs of a delivery, the last may be smaller
+	OrderDay int             // of the first
+	NeedDay  int             // on which the first must be there
+	Every    int             // days between deliveries; 0 where there is one
+	Each     int             // packs of a delivery, the last may be smaller
+	Usable   decimal.Decimal // of a pack, before it is too old
 }
 
 // purchaser makes the list for one site.
@@ -114,34 +115,30 @@ func (p *purchaser) purchase(n Need) (Purchase, error) {
 // pick chooses the packs and sets the days.
 func (p *purchaser) pick(one *Purchase, price Price, n Need) error {
 	offers, left := p.storable(one, standing(price.Packs))
-	perDay := n.LaterYears / daysPerYear
-	if perDay == 0 {
-		perDay = n.Year() / daysPerYear
-	}
 	if offers[0].AnyAmount() {
 		rounded, err := amount(one.Item, one.ToBuy)
 		if err != nil {
 			return err
 		}
-		one.Orders = []Order{{Pack: offers[0], Count: 1, Amount: rounded, Cost: rounded.Mul(offers[0].PerUnit), Each: 1}}
+		one.Orders = []Order{{Pack: offers[0], Count: 1, Amount: rounded, Cost: rounded.Mul(offers[0].PerUnit), Each: 1, Usable: rounded}}
 		one.Total, one.Flag = one.Orders[0].Cost, offers[0].Flag
 		one.Why = "priced by the unit: no pack sizes are known" + left
 		if one.Unit == "each" {
 			one.Why = "bought by the piece; it serves all lots"
 		}
-	} else if err := p.cover(one, offers, perDay, left); err != nil {
+	} else if err := p.cover(one, offers, n, left); err != nil {
 		return err
 	}
-	one.schedule(n, perDay)
+	one.schedule(n)
 	return nil
 }
 
 // cover finds the cheapest packs for the need. Of a pack counts what is used
 // before it is too old.
-func (p *purchaser) cover(one *Purchase, packs []Pack, perDay float64, left string) error {
+func (p *purchaser) cover(one *Purchase, packs []Pack, n Need, left string) error {
 	offers := make([]offer, len(packs))
 	for i, pack := range packs {
-		o, err := asOffer(pack, perDay)
+		o, err := asOffer(pack, n)
 		if err != nil {
 			return err
 		}
@@ -154,11 +151,11 @@ func (p *purchaser) cover(one *Purchase, packs []Pack, perDay float64, left stri
 		if count == 0 {
 			continue
 		}
-		n := decimal.NewFromInt(count)
-		one.Orders = append(one.Orders, Order{Pack: packs[i], Count: int(count), Amount: packs[i].Size.Mul(n), Cost: packs[i].Price.Mul(n)})
-		one.Total = one.Total.Add(packs[i].Price.Mul(n))
+		number, usable := decimal.NewFromInt(count), decimal.New(offers[i].content, -6)
+		one.Orders = append(one.Orders, Order{Pack: packs[i], Count: int(count), Amount: packs[i].Size.Mul(number), Cost: packs[i].Price.Mul(number), Usable: usable})
+		one.Total = one.Total.Add(packs[i].Price.Mul(number))
 		one.Flag = graver(one.Flag, packs[i].Flag)
-		good += float64(offers[i].content) / millionth * float64(count)
+		good += usable.Mul(number).InexactFloat64()
 		bought += packs[i].Size.InexactFloat64() * float64(count)
 	}
 	slices.SortStableFunc(one.Orders, func(a, b Order) int { return b.Pack.Size.Cmp(a.Pack.Size) })
@@ -172,12 +169,9 @@ const millionth = 1e6
 // mostMoney bounds what the choice of packs can add up.
 var mostMoney = decimal.New(1, 9)
 
-func asOffer(p Pack, perDay float64) (offer, error) {
+func asOffer(p Pack, n Need) (offer, error) {
 	size := p.Size.InexactFloat64()
-	content := size
-	if p.ShelfDays > 0 {
-		content = min(size, perDay*float64(p.ShelfDays))
-	}
+	content := n.usable(size, float64(p.ShelfDays))
 	if p.Price.GreaterThan(mostMoney) || size > mostMoney.InexactFloat64() {
 		return offer{}, fmt.Errorf("a pack of %s for %s is too large to be compared", p.Size, p.Price)
 	}

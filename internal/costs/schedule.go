@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math"
 	"slices"
+	"sort"
 	"time"
 
 	"parch/catalog"
@@ -13,45 +14,50 @@ import (
 const mostDeliveries = 12
 
 // schedule sets the days on which the packs must be there and, by the lead time,
-// be ordered. Large packs come first; each delivery is due on the day when what
-// was there before falls to the safety stock, the first batch on day 0. Days
-// before the first batch are negative until the list is counted from its earliest
-// order.
-func (one *Purchase) schedule(n Need, perDay float64) {
+// be ordered. Large packs come first; each delivery is due on the day when the
+// next taking would draw on the safety stock, the first batch on day 0. A delivery
+// is enough for the first batch of every lot. Days before the first batch are
+// negative until the list is counted from its earliest order.
+func (one *Purchase) schedule(n Need) {
 	covered := one.Have - one.Safety // what use may take before the next delivery
-	first := covered < min(n.AtOnce, n.Year())*(1-1e-9)
+	atOnce := min(n.AtOnce, n.Year())
 	one.Peak = one.Have
 	for i := range one.Orders {
 		o := &one.Orders[i]
-		size := o.Amount.InexactFloat64() / float64(o.Count)
-		o.Each = max(o.Pack.Minimum, (o.Count+mostDeliveries-1)/mostDeliveries, 1)
-		if first { // enough for the first batch
-			o.Each = max(o.Each, int(math.Ceil((min(n.AtOnce, n.Year())-covered)/size-1e-9)))
-		}
+		size, usable := o.Amount.InexactFloat64()/float64(o.Count), o.Usable.InexactFloat64()
+		o.Each = max(o.Pack.Minimum, (o.Count+mostDeliveries-1)/mostDeliveries, int(math.Ceil(atOnce/usable-1e-9)), 1)
 		if o.Each = min(o.Each, o.Count); one.Unit == "each" {
 			o.Each = o.Count
 		}
-		deliveries := (o.Count + o.Each - 1) / o.Each
-		o.NeedDay = dayWhen(covered, perDay)
-		if first {
-			o.NeedDay = 0
-			first = false
+		for left := o.Count; left > 0; left -= o.Each {
+			packs := float64(min(o.Each, left))
+			day := n.dayShort(covered)
+			stock := one.Safety + max(0, covered-n.takenThrough(day-1)) // when they arrive
+			one.Peak = max(one.Peak, stock+packs*size)
+			covered += packs * usable
+			o.space(day, left == o.Count, (o.Count-left)/o.Each)
 		}
 		o.OrderDay = o.NeedDay - max(o.Pack.LeadDays, 0)
-		if deliveries > 1 {
-			o.Every = max(1, int(float64(o.Each)*size/perDay))
-		}
-		stock := max(one.Safety, one.Have-perDay*float64(o.NeedDay)) // when the first arrives
-		one.Peak = max(one.Peak, stock+float64(o.Each)*size)
-		covered += float64(o.Count) * size
 	}
 }
 
-func dayWhen(covered, perDay float64) int {
-	if covered <= 0 || perDay <= 0 {
-		return 0
+// space notes the day on which a delivery is due; deliveries are evenly spaced, so
+// that none is late.
+func (o *Order) space(day int, first bool, number int) {
+	if first {
+		o.NeedDay = day
+		return
 	}
-	return int(math.Min(math.Floor(covered/perDay), 10*daysPerYear))
+	apart := max(1, (day-o.NeedDay)/number)
+	if o.Every == 0 || apart < o.Every {
+		o.Every = apart
+	}
+}
+
+// dayShort is the day on which more is taken than is there.
+func (n Need) dayShort(there float64) int {
+	enough := max(0, there) * (1 + 1e-9)
+	return sort.Search(10*daysPerYear, func(day int) bool { return n.takenThrough(day) > enough })
 }
 
 // DateOf is the date of a day of the list where the earliest order is placed on the

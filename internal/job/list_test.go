@@ -82,3 +82,15 @@ func TestPriceListThatCannotBeRead(t *testing.T) {
 		t.Errorf("got %v\nwant %s", err, want)
 	}
 }
+
+// A currency in the cell of the price and another in its column: neither is taken.
+func TestTwoCurrenciesInARow(t *testing.T) {
+	_, err := readList(t, "date: 2026-12-01\nrates: [{from: USD, rate: 0.92, date: 2026-11-01}]\n", "item;pack;price;currency\nsieve-3a;5 kg;148 EUR;USD\n")
+	const want = `prices.csv:2: column "currency": "USD" contradicts the price, "148 EUR"; give the currency once`
+	if err == nil || !strings.Contains(err.Error(), want) {
+		t.Errorf("%v, want %s", err, want)
+	}
+	if _, err := readList(t, "date: 2026-12-01\n", "item;pack;price;currency\nsieve-3a;5 kg;148 EUR;EUR\n"); err != nil {
+		t.Errorf("the same currency twice: %v", err)
+	}
+}

@@ -116,8 +116,13 @@ func (r *reader) price(n *document.Node) (own Price, ok bool) {
 	if last := own.ValidUntil; last != "" && last < own.Date {
 		f.Get("valid until").Fail("%s is before the date of the price, %s", quantity.Quote(last), own.Date)
 	}
-	if c := f.Get("currency"); c != nil && endsInDigit(priceNode.Text()) {
+	switch c := f.Get("currency"); {
+	case c == nil:
+	case endsInDigit(priceNode.Text()):
 		priceNode = priceNode.With(" " + c.Text())
+	case !strings.Contains(priceNode.Text(), c.Text()):
+		c.Fail("%s contradicts the price, %s; give the currency once", quantity.Quote(c.Text()), quantity.Quote(priceNode.Text()))
+		return own, false
 	}
 	money, converted, okMoney := r.money(priceNode)
 	item, unit := r.priced(itemNode)
@@ -179,8 +184,7 @@ func (r *reader) pack(n *document.Node, price decimal.Decimal, own *Price) bool 
 	size, err := decimal.NewFromString(text)
 	least, most := decimal.New(1, -6), decimal.New(1, 6)
 	if err != nil || size.LessThan(least) || size.GreaterThan(most) {
-		symbol := strings.TrimSpace(" " + way.symbol)
-		n.Fail("%s is not a possible pack; allowed: 0.000001 to 1000000 %s", quantity.Quote(n.Text()), symbol)
+		n.Fail("%s is not a possible pack; allowed: %s", quantity.Quote(n.Text()), strings.TrimSpace("0.000001 to 1000000 "+way.symbol))
 		return false
 	}
 	own.PackSize, own.PackPrice = size, price

@@ -113,7 +113,7 @@ func (r *Report) Priced() *Report {
 func (r *Report) recalled() []Weak {
 	var weak []Weak
 	if r.Job.Site.Cooling == job.Chiller {
-		weak = append(weak, Weak{What: "electricity of a chiller", Value: "0.7 kWh a kWh of heat", Confidence: string(catalog.Memory), Note: "0.4 to 1.0"})
+		weak = append(weak, Weak{What: "electricity of a chiller", Value: "its draw over its cooling, both from the catalog", Confidence: string(catalog.Memory), Note: "a unit that runs below its limit draws less"})
 	}
 	for _, p := range r.Buying.Purchases {
 		if p.Transport.UN != "" {
