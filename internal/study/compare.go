@@ -95,6 +95,7 @@ func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog
 		return Lot{}, nil, err
 	}
 	if given != nil {
+		l.repeated = true
 		offered = withSettings(offered, given)
 	} else {
 		var dropped []routes.Excluded
@@ -118,7 +119,6 @@ func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog
 			return Lot{}, nil, fmt.Errorf("%s: %w", r.ID(), err)
 		}
 		l.Routes = append(l.Routes, route)
-		l.offered = append(l.offered, r)
 		l.costs[route.ID] = math.Inf(1)
 		if route.Meets() && route.Bill.Priced() {
 			l.costs[route.ID] = route.Bill.PerLitre.InexactFloat64()

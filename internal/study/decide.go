@@ -23,7 +23,7 @@ func (r *Report) decide(ctx context.Context, c *catalog.Catalog, progress *meter
 	for i := range r.Lots {
 		l := &r.Lots[i]
 		l.front()
-		if l.NothingToDo != "" || len(l.offered) == 0 {
+		if l.NothingToDo != "" || len(l.costs) == 0 {
 			continue
 		}
 		group.Go(func() error {
@@ -71,7 +71,7 @@ func newQuestion(r *Report, l *Lot, c *catalog.Catalog) (*question, error) {
 	for i := range l.Routes {
 		q.warm[l.Routes[i].ID] = l.Routes[i].Run.Settings
 	}
-	if lot == l.Job && r.Job.Objective == string(search.Cost) {
+	if !l.repeated && lot == l.Job && r.Job.Objective == string(search.Cost) {
 		for _, route := range q.offered {
 			if cost, ok := l.costs[route.ID()]; ok {
 				q.now[route.ID()] = cost
