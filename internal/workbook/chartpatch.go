@@ -195,10 +195,38 @@ func points(cells []cell) string {
 	return b.String()
 }
 
+// lookUpDrawn keeps the cells that charts refer to, for when the sheets are written.
+func (w *file) lookUpDrawn() error {
+	w.drawn = map[string][]cell{}
+	for _, g := range w.grids {
+		for _, p := range g.charts {
+			for _, s := range p.chart.Series {
+				for _, reference := range []string{s.Name, s.Categories, s.Values} {
+					cells, err := w.valuesAt(reference)
+					if err != nil {
+						return fmt.Errorf("chart on %s: %w", g.name, err)
+					}
+					w.drawn[reference] = cells
+				}
+			}
+		}
+	}
+	return nil
+}
+
+// drawnAt are the cells of a reference as a chart writes it.
+func (w *file) drawnAt(reference string) ([]cell, error) {
+	cells, ok := w.drawn[html.UnescapeString(reference)]
+	if !ok {
+		return nil, fmt.Errorf("%s was not looked up", reference)
+	}
+	return cells, nil
+}
+
 // valuesAt looks up the cells of a reference such as Costs!$D$5:$D$9. A cell that
 // does not exist is an error: the chart would draw nothing.
 func (w *file) valuesAt(reference string) ([]cell, error) {
-	sheet, place, ok := strings.Cut(html.UnescapeString(reference), "!")
+	sheet, place, ok := strings.Cut(reference, "!")
 	if !ok {
 		return nil, fmt.Errorf("%q names no sheet", reference)
 	}

@@ -1,7 +1,6 @@
 package workbook
 
 import (
-	"bytes"
 	"errors"
 	"fmt"
 	"io"
@@ -23,6 +22,7 @@ type file struct {
 	title, created string // created is an ISO date
 	grids          []*grid
 	names          []definedName
+	drawn          map[string][]cell // what the charts refer to
 }
 
 // write checks everything, then writes the package.
@@ -33,16 +33,20 @@ func (w *file) write(out io.Writer) (err error) {
 	f := excelize.NewFile()
 	defer func() { err = errors.Join(err, f.Close()) }()
 	f.SetZipWriter(func(out io.Writer) excelize.ZipWriter {
-		return &parts{out: out, content: map[string]*bytes.Buffer{}, patch: w.patchPart}
+		return &parts{out: out, patch: w.patchPart, done: map[string]packed{}}
 	})
 	if err := w.prepare(f); err != nil {
 		return err
 	}
 	e := emitter{file: f, styles: map[styled]int{}, overlays: map[look]int{}}
+	if err := w.lookUpDrawn(); err != nil {
+		return err
+	}
 	for _, g := range w.grids {
 		if err := e.sheet(g); err != nil {
 			return fmt.Errorf("sheet %s: %w", g.name, err)
 		}
+		g.rows = nil // written: a large workbook would not fit twice
 	}
 	return f.Write(out)
 }

@@ -62,3 +62,16 @@ func BenchmarkManyLots(b *testing.B) {
 		}
 	}
 }
+
+func BenchmarkDemo(b *testing.B) {
+	r, err := loadDemo()
+	if err != nil {
+		b.Fatal(err)
+	}
+	b.ReportAllocs()
+	for b.Loop() {
+		if err := Write(io.Discard, r); err != nil {
+			b.Fatal(err)
+		}
+	}
+}

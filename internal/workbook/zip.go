@@ -6,6 +6,7 @@ import (
 	"compress/flate"
 	"errors"
 	"fmt"
+	"hash/crc32"
 	"io"
 	"io/fs"
 	"regexp"
@@ -18,27 +19,77 @@ import (
 const contentTypes = "[Content_Types].xml"
 
 // parts collects the parts of a package and writes them sorted, with one time
-// stamp, so that the same content always gives the same bytes.
+// stamp, so that the same content always gives the same bytes. A part is
+// compressed as soon as the next one begins: a large workbook would not fit
+// beside itself.
 type parts struct {
-	out     io.Writer
-	content map[string]*bytes.Buffer
-	patch   func(name string, part []byte) ([]byte, error)
+	out   io.Writer
+	patch func(name string, part []byte) ([]byte, error)
+
+	open   string // the part that is being written
+	buffer bytes.Buffer
+	done   map[string]packed
+}
+
+// largePart is the size from which time counts more than a few kilobytes.
+const largePart = 4 << 20
+
+// packed is a compressed part.
+type packed struct {
+	data     []byte
+	size     uint64 // before compression
+	checksum uint32
 }
 
 func (p *parts) Create(name string) (io.Writer, error) {
-	if _, ok := p.content[name]; ok {
+	if err := p.finish(); err != nil {
+		return nil, err
+	}
+	if _, ok := p.done[name]; ok {
 		return nil, fmt.Errorf("part %s is written twice", name)
 	}
-	buffer := new(bytes.Buffer)
-	p.content[name] = buffer
-	return buffer, nil
+	p.open = name
+	return &p.buffer, nil
 }
 
 func (p *parts) AddFS(fs.FS) error { return errors.New("adding a file system is not supported") }
 
+// finish patches and compresses the part that is being written.
+func (p *parts) finish() error {
+	if p.open == "" {
+		return nil
+	}
+	part, err := p.patch(p.open, p.buffer.Bytes())
+	if err != nil {
+		return fmt.Errorf("part %s: %w", p.open, err)
+	}
+	var data bytes.Buffer
+	level := flate.BestCompression
+	if len(part) > largePart {
+		level = flate.BestSpeed
+	}
+	w, err := flate.NewWriter(&data, level)
+	if err != nil {
+		return err
+	}
+	if _, err := w.Write(part); err != nil {
+		return err
+	}
+	if err := w.Close(); err != nil {
+		return err
+	}
+	p.done[p.open] = packed{data.Bytes(), uint64(len(part)), crc32.ChecksumIEEE(part)}
+	p.open = ""
+	p.buffer.Reset()
+	return nil
+}
+
 func (p *parts) Close() error {
-	names := make([]string, 0, len(p.content))
-	for name := range p.content {
+	if err := p.finish(); err != nil {
+		return err
+	}
+	names := make([]string, 0, len(p.done))
+	for name := range p.done {
 		names = append(names, name)
 	}
 	sort.Slice(names, func(i, j int) bool {
@@ -48,16 +99,13 @@ func (p *parts) Close() error {
 	archive := zip.NewWriter(p.out)
 	archive.RegisterCompressor(zip.Deflate, func(w io.Writer) (io.WriteCloser, error) { return flate.NewWriter(w, flate.BestCompression) })
 	for _, name := range names {
-		part, err := p.patch(name, p.content[name].Bytes())
-		if err != nil {
-			return fmt.Errorf("part %s: %w", name, err)
-		}
-		header := &zip.FileHeader{Name: name, Method: zip.Deflate, Modified: time.Date(1980, 1, 1, 0, 0, 0, 0, time.UTC)}
-		w, err := archive.CreateHeader(header)
+		part := p.done[name]
+		w, err := archive.CreateRaw(&zip.FileHeader{Name: name, Method: zip.Deflate, Modified: time.Date(1980, 1, 1, 0, 0, 0, 0, time.UTC),
+			CRC32: part.checksum, CompressedSize64: uint64(len(part.data)), UncompressedSize64: part.size})
 		if err != nil {
 			return err
 		}
-		if _, err := w.Write(part); err != nil {
+		if _, err := w.Write(part.data); err != nil {
 			return err
 		}
 	}
@@ -80,7 +128,7 @@ func (w *file) patchPart(name string, part []byte) ([]byte, error) {
 	case name == contentTypes:
 		return sortDefaults(part), nil
 	case strings.HasPrefix(name, "xl/charts/chart"):
-		return patchChart(part, w.valuesAt)
+		return patchChart(part, w.drawnAt)
 	case strings.HasPrefix(name, "xl/drawings/drawing"):
 		return anchorBySize(part)
 	case strings.HasPrefix(name, "xl/worksheets/sheet"):
