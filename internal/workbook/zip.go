@@ -29,6 +29,8 @@ type parts struct {
 	open   string // the part that is being written
 	buffer bytes.Buffer
 	done   map[string]packed
+
+	writers map[int]*flate.Writer // by level
 }
 
 // largePart is the size from which time counts more than a few kilobytes.
@@ -63,25 +65,39 @@ func (p *parts) finish() error {
 	if err != nil {
 		return fmt.Errorf("part %s: %w", p.open, err)
 	}
-	var data bytes.Buffer
-	level := flate.BestCompression
-	if len(part) > largePart {
-		level = flate.BestSpeed
-	}
-	w, err := flate.NewWriter(&data, level)
+	data, err := p.compress(part)
 	if err != nil {
 		return err
 	}
-	if _, err := w.Write(part); err != nil {
-		return err
-	}
-	if err := w.Close(); err != nil {
-		return err
-	}
-	p.done[p.open] = packed{data.Bytes(), uint64(len(part)), crc32.ChecksumIEEE(part)}
+	p.done[p.open] = packed{data, uint64(len(part)), crc32.ChecksumIEEE(part)}
 	p.open = ""
 	p.buffer.Reset()
 	return nil
+}
+
+func (p *parts) compress(part []byte) ([]byte, error) {
+	level := flate.DefaultCompression
+	if len(part) > largePart {
+		level = flate.BestSpeed
+	}
+	var data bytes.Buffer
+	w := p.writers[level]
+	if w == nil {
+		var err error
+		if w, err = flate.NewWriter(&data, level); err != nil {
+			return nil, err
+		}
+		if p.writers == nil {
+			p.writers = map[int]*flate.Writer{}
+		}
+		p.writers[level] = w
+	}
+	w.Reset(&data)
+	if _, err := w.Write(part); err != nil {
+		return nil, err
+	}
+	err := w.Close()
+	return data.Bytes(), err
 }
 
 func (p *parts) Close() error {
