@@ -113,7 +113,6 @@ func (p *parts) Close() error {
 		return a < b || a == b && names[i] < names[j]
 	})
 	archive := zip.NewWriter(p.out)
-	archive.RegisterCompressor(zip.Deflate, func(w io.Writer) (io.WriteCloser, error) { return flate.NewWriter(w, flate.BestCompression) })
 	for _, name := range names {
 		part := p.done[name]
 		w, err := archive.CreateRaw(&zip.FileHeader{Name: name, Method: zip.Deflate, Modified: time.Date(1980, 1, 1, 0, 0, 0, 0, time.UTC),
