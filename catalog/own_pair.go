@@ -58,7 +58,7 @@ func (s *shelf) onePointPair(n *document.Node, v *Solvent) *WaterPair {
 	if atoms, err := parseFormula(v.Formula); err == nil && atoms["O"]+atoms["N"]+atoms["S"] > 0 {
 		heatJ = heatOfSolutionPolarJ
 	}
-	halfA, halfB := onePoint(x, tK, heatJ)
+	halfA, halfB, heatJ := onePoint(x, tK, heatJ)
 	w := &WaterPair{
 		A12: halfA, B12: halfB, A21: halfA, B21: halfB, TMinK: tK - oneSolubilityK, TMaxK: tK + oneSolubilityK,
 		Quality: "D", FittedTo: fmt.Sprintf("%s at %s", value.Text, quantity.FormatTemperature(tK)), Origin: value.Origin,
@@ -66,17 +66,27 @@ func (s *shelf) onePointPair(n *document.Node, v *Solvent) *WaterPair {
 		NRTL: thermo.BinaryNRTL(halfA, halfB, halfA, halfB, 0),
 	}
 	checkGaps(n, w, v.Name)
-	w.Note = join(w.Note, fmt.Sprintf("one-parameter model through one solubility; heat of solution %.0f kJ/mol assumed; the solvent in water is overstated", heatJ/1e3))
-	v.guess("the activity model: one parameter from the water held at %s, heat of solution %.0f kJ/mol; other temperatures within a factor of %g",
+	w.Confidence = Assumption // its one point may be published, its slope and shape are not
+	w.Note = join(w.Note, fmt.Sprintf("one-parameter model through one solubility; heat of solution %.2g kJ/mol assumed; the solvent in water is overstated", heatJ/1e3))
+	v.guess("the activity model: one parameter from the water held at %s, heat of solution %.2g kJ/mol; other temperatures within a factor of %g",
 		quantity.FormatTemperature(tK), heatJ/1e3, oneSolubilityBand)
 	return w
 }
 
-// onePoint returns tau = a + b/T (b in K) of onePointPair.
-func onePoint(x, tK, heatJPerMol float64) (a, b float64) {
+// A symmetric pair parts where A is above 2. Water and a liquid that takes up much
+// of it would mix when warm with the usual slope; the slope is cut down to what
+// leaves A at leastMargules at warmestGapK, the upper end of what is checked.
+const leastMargules, warmestGapK = 2.02, 383.15
+
+// onePoint returns tau = a + b/T (b in K) of onePointPair and the heat of solution
+// that it has, in J/mol: the one asked for, or less where the gap would close.
+func onePoint(x, tK, heatJPerMol float64) (a, b, heatJ float64) {
 	margules := func(x float64) float64 { return math.Log((1-x)/x) / (1 - 2*x) }
 	const h = 1e-6
 	slope := (margules(x*(1+h)) - margules(x*(1-h))) / (2 * h) // dA/d ln x
 	b = -slope * heatJPerMol / thermo.GasConstant              // dA/d(1/T)
-	return (margules(x) - b/tK) / 2, b / 2
+	if tK < warmestGapK {
+		b = math.Min(b, (margules(x)-leastMargules)/(1/tK-1/warmestGapK))
+	}
+	return (margules(x) - b/tK) / 2, b / 2, -b * thermo.GasConstant / slope
 }

@@ -136,7 +136,7 @@ func (s *shelf) straightDensity(n *document.Node, v *Solvent) Curve {
 	}
 	slope := usualExpansionPerK * value.SI
 	c := estimated(thermo.QuadRho, "kg/m3", value.SI+slope*tK, -slope)
-	c.Origin = value.Origin
+	c.Origin = madeOf(value)
 	c.Note = join(c.Note, "one value; expansion 1.1e-3 per kelvin assumed")
 	v.guess("the density away from %s: expansion of 1.1e-3 per kelvin", quantity.FormatTemperature(tK))
 	return c
@@ -149,7 +149,7 @@ func (s *shelf) watsonHeat(n *document.Node, v *Solvent) Curve {
 		return Curve{}
 	}
 	c := estimated(thermo.Watson, "J/mol", value.SI, v.BoilingPoint.SI, watsonExponent, v.CriticalTemperature.SI)
-	c.Origin = value.Origin
+	c.Origin = madeOf(value)
 	c.Note = join(c.Note, "one value, taken to hold at the boiling point; usual exponent 0.38")
 	v.guess("the heat of vaporization away from the boiling point: exponent 0.38")
 	return c
@@ -167,6 +167,15 @@ func clapeyronCurve(v *Solvent) Curve {
 	slopeK := (heat.At(tb) - h*tb) / thermo.GasConstant
 	power := h / thermo.GasConstant
 	return estimated(thermo.DIPPR101, "Pa", math.Log(standardPa)+slopeK/tb-power*math.Log(tb), -slopeK, power, 0, 1)
+}
+
+// madeOf is the origin of a curve that is made of one value: no better than derived.
+func madeOf(value Value) Origin {
+	o := value.Origin
+	if o.Confidence == Published || o.Confidence == Fitted {
+		o.Confidence = Derived
+	}
+	return o
 }
 
 // estimated is a curve that rests on an assumption; the unit is SI already.

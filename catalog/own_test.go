@@ -39,6 +39,9 @@ func TestSolventFromFourNumbers(t *testing.T) {
 	if full.Own || full.BoilingPoint.Own || load(t).Solvents["bench-xylene"] != nil {
 		t.Error("the built-in catalog was touched")
 	}
+	if p, d, h := own.Water.Confidence, own.Density.Confidence, own.HeatOfVaporization.Confidence; p != catalog.Assumption || d != catalog.Derived || h != catalog.Derived {
+		t.Errorf("what is made of one published value is called %s (pair), %s (density), %s (heat)", p, d, h)
+	}
 	if len(own.Estimates) < 6 || own.Hazards.PeroxideClass == "none" || own.Water.SolubilityBand <= 1.2 {
 		t.Errorf("what was estimated is not said: %q, peroxides %q, band %v", own.Estimates, own.Hazards.PeroxideClass, own.Water.SolubilityBand)
 	}
@@ -155,6 +158,35 @@ func TestOwnPriceOfAService(t *testing.T) {
 func TestShortTermLimitOfEthanol(t *testing.T) {
 	if got := load(t).Solvents["ethanol"].Hazards.ExposureLimit; got != "1000 ppm short term" {
 		t.Errorf("exposure limit %q", got)
+	}
+}
+
+// Liquids that take up much water can be added with one solubility too, and hold
+// that much (handbook values, from memory).
+func TestOneSolubilityOfLiquidsThatTakeUpMuch(t *testing.T) {
+	four := string(ownFile(t, "four-numbers.yaml").Data)
+	for _, c := range []struct {
+		name, formula, class, boils, density, heat, water string
+		share                                             float64
+	}{
+		{"propyl acetate", "C5H10O2", "ester", "101.5", "0.888", "33.9", "2.9 % m/m", 0.029},
+		{"2-pentanone", "C5H10O", "ketone", "102.3", "0.802", "33.4", "3.3 % m/m", 0.033},
+		{"1-octanol", "C8H18O", "alcohol", "195", "0.825", "49", "4.7 % m/m", 0.047},
+		{"1-pentanol", "C5H12O", "alcohol", "138", "0.811", "44.4", "9.2 % m/m", 0.092},
+		{"cyclohexanone", "C6H10O", "ketone", "155.6", "0.942", "38.1", "8 % m/m", 0.08},
+	} {
+		text := strings.NewReplacer("C8H10", c.formula, "class: aromatic", "class: "+c.class, "144.4", c.boils, "0.875", c.density, "36.24", c.heat, "441 mg/kg", c.water).Replace(four)
+		cat, err := catalog.LoadWith(catalog.File{Name: "mine.yaml", Data: []byte(text)})
+		if err != nil {
+			t.Errorf("%s: %v", c.name, err)
+			continue
+		}
+		if got := held(t, cat, "bench-xylene", 298.15); math.Abs(got/c.share-1) > 0.001 {
+			t.Errorf("%s holds %.4g at 25 °C, %.4g was given", c.name, got, c.share)
+		}
+		if cold, warm := held(t, cat, "bench-xylene", 288.15), held(t, cat, "bench-xylene", 353.15); cold >= warm {
+			t.Errorf("%s holds %.4g at 15 and %.4g at 80 °C", c.name, cold, warm)
+		}
 	}
 }
 
