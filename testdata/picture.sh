@@ -1,5 +1,5 @@
 #!/usr/bin/env bash
-# Makes testdata/compare.png, the picture in the README, from the demonstration's
+# Makes testdata/decision.png, the picture in the README, from the demonstration's
 # workbook. Needs LibreOffice and pdftoppm.
 set -euo pipefail
 here=$(cd "$(dirname "$0")" && pwd)
@@ -8,5 +8,5 @@ trap 'rm -rf "$work"' EXIT
 cd "$here/.."
 go run ./cmd/parch compare --demo --quiet --workbook "$work/demo.xlsx"
 soffice "-env:UserInstallation=file://$work/profile" --headless --convert-to pdf --outdir "$work" "$work/demo.xlsx" >/dev/null
-page=$(pdftotext "$work/demo.pdf" - | awk 'BEGIN { RS = "\f" } /^Compare/ && !page { page = NR } END { print page }')
-pdftoppm -r 70 -f "$page" -l "$page" -singlefile -png "$work/demo.pdf" "$here/compare"
+page=$(pdftotext "$work/demo.pdf" - | awk 'BEGIN { RS = "\f" } /^Decision/ && !page { page = NR } END { print page }')
+pdftoppm -r 90 -f "$page" -l "$page" -singlefile -png "$work/demo.pdf" "$here/decision"

@@ -1,5 +1,8 @@
 package workbook
 
+// curvesPrinted rows of Curves are printed: tables are for looking up, not for paper.
+const curvesPrinted = 48
+
 // workPages are the rows that the working sheets print: the blocks with a row for
 // each step or route, not what they are computed from.
 func (l *layout) workPages() {
@@ -7,6 +10,8 @@ func (l *layout) workPages() {
 	for _, g := range l.grids {
 		var blocks []rows
 		switch g.name {
+		case sheetCurves:
+			g.printed = []rows{{1, min(g.last(), curvesPrinted)}}
 		case sheetSteps:
 			blocks = []rows{l.flowRows}
 		case sheetCosts:
