@@ -76,7 +76,7 @@ func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog
 	l := Lot{
 		Job: lot, Solvent: k.Solvent,
 		AcceptAt: k.Limit.AcceptAt, CannotShow: k.Limit.CannotShow, Uncertainty: k.Limit.Uncertainty, Detection: k.Assay.DetectionLimit, Injections: k.Assay.Injections,
-		Warnings: lotWarnings(k), costs: map[string]float64{},
+		Warnings: lotWarnings(k),
 	}
 	if k.Dry() {
 		l.NothingToDo = fmt.Sprintf("nothing to do: the reading of %s is at or below the %s at which a target of %s is accepted; it rests on that Karl Fischer reading of a clear sample%s",
@@ -95,7 +95,6 @@ func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog
 		return Lot{}, nil, err
 	}
 	if given != nil {
-		l.repeated = true
 		offered = withSettings(offered, given)
 	} else {
 		var dropped []routes.Excluded
@@ -119,10 +118,6 @@ func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog
 			return Lot{}, nil, fmt.Errorf("%s: %w", r.ID(), err)
 		}
 		l.Routes = append(l.Routes, route)
-		l.costs[route.ID] = math.Inf(1)
-		if route.Meets() && route.Bill.Priced() {
-			l.costs[route.ID] = route.Bill.PerLitre.InexactFloat64()
-		}
 	}
 	if err := drawn.judge(l.Routes, lot.FailedBatch); err != nil {
 		return Lot{}, nil, err

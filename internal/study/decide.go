@@ -23,7 +23,7 @@ func (r *Report) decide(ctx context.Context, c *catalog.Catalog, progress *meter
 	for i := range r.Lots {
 		l := &r.Lots[i]
 		l.front()
-		if l.NothingToDo != "" || len(l.costs) == 0 {
+		if l.NothingToDo != "" || len(l.Routes) == 0 {
 			continue
 		}
 		group.Go(func() error {
@@ -42,7 +42,8 @@ func (r *Report) decide(ctx context.Context, c *catalog.Catalog, progress *meter
 	return group.Wait()
 }
 
-// question is what is asked of a lot beyond its ranking: always by the cost.
+// question is what is asked of a lot beyond its ranking: always by the cost of what
+// is computed, whatever the chance to reach the limit.
 type question struct {
 	lot     *Lot
 	job     *job.Job
@@ -70,16 +71,6 @@ func newQuestion(r *Report, l *Lot, c *catalog.Catalog) (*question, error) {
 	}
 	for i := range l.Routes {
 		q.warm[l.Routes[i].ID] = l.Routes[i].Run.Settings
-	}
-	if !l.repeated && lot == l.Job && r.Job.Objective == string(search.Cost) {
-		for _, route := range q.offered {
-			if cost, ok := l.costs[route.ID()]; ok {
-				q.now[route.ID()] = cost
-			} else {
-				q.now[route.ID()] = math.Inf(1)
-			}
-		}
-		return q, nil
 	}
 	_, q.now, err = q.field(q.tuner(k, q.book), nil).Cheapest(nil, math.Inf(1))
 	return q, err

@@ -54,9 +54,7 @@ type Lot struct {
 	WhatIf      *WhatIf      // nil where there is nothing to dry
 	Warnings    []string
 
-	costs    map[string]float64 // of the routes run, a litre; +Inf where the limit is missed or a price is not known
-	repeated bool               // from the settings of an earlier run: no route was tuned
-	Doubts   []Mover            // of the best route, the largest first; empty without draws
+	Doubts []Mover // of the best route, the largest first; empty without draws
 }
 
 // Route is one compared route.
