@@ -107,6 +107,7 @@ func (l *layout) alwaysTests() []test {
 		return tests
 	}
 	tests = append(tests, l.followTests()...)
+	tests = append(tests, l.curveTests()...)
 	tests = append(tests, l.billTests()...)
 	tests = append(tests, l.balanceTests()...)
 	return append(tests, l.rankTests()...)
@@ -133,6 +134,35 @@ func (l *layout) inputTests() []test {
 			derived(fmt.Sprintf("SUMPRODUCT(ISNA(MATCH(%s,%s,0))*1)", items, known), 0.0).shown("0"), none(), 0, "lines"})
 	}
 	return tests
+}
+
+// curveTests hold the columns of the curves to the sums that the program gave them.
+func (l *layout) curveTests() (tests []test) {
+	g := l.gridOf(sheetCurves)
+	for _, c := range l.curveColumns {
+		sum := 0.0
+		for row := c.rows.first; row <= c.rows.last; row++ {
+			v, _ := g.rows[row-1][c.column-1].value.(float64)
+			sum += v
+		}
+		place := on(sheetCurves, area(c.column, c.rows.first, c.rows.last))
+		tests = append(tests, test{"Sum of the curve in " + place, derived("SUM("+place+")", sum).shown("0.000E+00"), number(sum, "1").shown("0.000E+00"),
+			max(curveTolerance*abs(sum), 1e-12), "sum"})
+	}
+	return tests
+}
+
+// curveTolerance is the share of a sum within which only the order of adding up
+// makes a difference.
+const curveTolerance = 1e-12
+
+func (l *layout) gridOf(sheet string) *grid {
+	for _, g := range l.grids {
+		if g.name == sheet {
+			return g
+		}
+	}
+	return nil
 }
 
 // followTests count what only a new run can follow.
