@@ -224,6 +224,8 @@ func soakBlock() *liveBlock {
 		{"md", "Equilibrium for the dose", "kg/kg", "IFERROR({mc}-{go}*({mc}-{mb})/({go}-{gn}),{mc})"},
 		{"exact", "Dose that reaches it", "kg/m3", "IFERROR({S}*({r0}-{md}/(1-{md}))/({qa}+{slope}*({md}-{wa})-{q0})/{vol},{most})"},
 		{"dose", "Dose", "kg/m3", "IF({feasible}=1,MIN({most},MAX(site_least_dose,{exact})),{most})"},
+		{"sd", "In time, at the dose", "kg", inTimeAt("md")}, {"gz", "Over, at the dose", "kg", surplusAt("sd", "md")},
+		{"solved", "Solved, or far under the least dose", "1", "MAX(1-{feasible},(ABS({gz})<={sd}*job_tie*1000*1000)*1,({exact}+{exact}<site_least_dose)*1)"},
 		{"meets", "Dosed to reach it", "1", "{feasible}*({exact}>=site_least_dose)*({exact}<={most})"},
 		{"m", "Sieve", "kg", "{dose}*{vol}"}, {"all", "Water to share", "kg", "{S}*{r0}+{m}*{q0}"},
 	}...)
@@ -237,7 +239,7 @@ func soakBlock() *liveBlock {
 	return newLiveBlock("soak", "Soaks", common(with(map[string]string{
 		"Sout": "{S}-{held}", "Wout": "{Sout}*{out}/(1-{out})", "hours": "{h}+{attended}", "attended": "{lot.vessels}*{att}" + toHours,
 		"energy": "{stir}*{lot.vessels}*{stirw}*{h}/1000", "agent": "{m}", "pieces": "{lot.vessels}",
-		"follows": "{first}*{dry}*(({runs}>0)*1={billed})*{lot.vesselok}*{oncurve}",
+		"follows": "{first}*{dry}*(({runs}>0)*1={billed})*{lot.vesselok}*{oncurve}*{solved}",
 	}, sieveUses)), own)
 }
 
