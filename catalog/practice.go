@@ -33,6 +33,8 @@ var practiceKeys = map[string]quantity.Dimension{
 	"oven-attended":         quantity.Time,
 	"dose-minimum":          quantity.MassConcentration,
 	"dose-maximum":          quantity.MassConcentration,
+	"powder-diameter":       quantity.Length,
+	"powder-hold-up":        quantity.HoldUp,
 	"stir-velocity":         quantity.Velocity,
 	"stirrer-power":         quantity.Power,
 	"column-velocity":       quantity.Velocity,

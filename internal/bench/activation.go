@@ -50,10 +50,14 @@ func (r *reader) activated() {
 			return
 		}
 	}
+	if stated, ok, err := job.StatedResidual(text); ok {
+		r.statedResidual(stated, err)
+		return
+	}
 	ovenK, rest, err := leadingTemperature(text)
 	if err != nil {
 		r.mistake(fmt.Sprintf("--activated: %s is not a history known here", quantity.Quote(text)),
-			`write the oven's temperature ("300 C", "300 C closed hot", "250 C, closed hot, 30 d", "200 C, vacuum 1 hPa") or one of: `+strings.Join(r.historyKeys(), ", "))
+			`write the oven's temperature ("300 C", "300 C closed hot", "250 C, closed hot, 30 d", "200 C, vacuum 1 hPa"), what the sieve holds ("residual 1.5 g/100 g") or one of: `+strings.Join(r.historyKeys(), ", "))
 		return
 	}
 	kept, err := aftercare(rest)
@@ -62,6 +66,18 @@ func (r *reader) activated() {
 		return
 	}
 	r.fromOven(text, ovenK, kept)
+}
+
+// statedResidual takes what the owner of the sieve says that it holds.
+func (r *reader) statedResidual(stated job.Residual, err error) {
+	if err != nil {
+		r.mistake("--activated: "+err.Error(), `write it like "residual 1.5 g/100 g" or "residual 1.5 g/100 g, 300 C"`)
+		return
+	}
+	a := noActivation()
+	a.Text, a.OvenK, a.KgPerKg = "residual loading as stated", stated.OvenK, stated.KgPerKg
+	a.Origin = catalog.Origin{Source: "as stated", Confidence: catalog.Assumption, Note: "not checked here"}
+	r.q.Activation = a
 }
 
 func (r *reader) historyKeys() (keys []string) {

@@ -93,9 +93,10 @@ func (a *Answer) adviseSoak() {
 	if q.Activation.Note != "" {
 		a.tell("history", "%s", q.Activation.Note)
 	}
-	a.tell("history", "%s: holds %s g/100 g at the start and %s at the end; no dose and no time pass the floor of %s that this sets",
-		q.Activation.Text, quantity.Significant(100*q.Activation.KgPerKg, 2), quantity.Significant(a.Figure("loading after"), 3), quantity.FormatWater(a.Floor))
-	if next, ok := a.Case.Again(a.asked(), a.Single); ok {
+	a.tell("history", "%s: holds %s g/100 g at the start%s; %s", q.Activation.Text, quantity.Significant(100*q.Activation.KgPerKg, 2), a.atTheEnd(), a.floorOfHistory())
+	if q.Charges > 1 {
+		a.adviseCharges()
+	} else if next, ok := a.Case.Again(a.asked(), a.Single); ok {
 		a.tell("again", "the same charge, not regenerated, would leave %s in the next such lot; it has taken %s of water",
 			quantity.FormatWater(next), weighed(a.Figure("water taken up")/1e3))
 	}
@@ -106,6 +107,9 @@ func (a *Answer) adviseSoak() {
 // that makes water on the sorbent has no such two sizes.
 func (a *Answer) takenApart() string {
 	asked := a.asked()
+	if asked.Charges > 1 {
+		return fmt.Sprintf(" in %d equal charges", asked.Charges)
+	}
 	size, err := a.Case.SizeOf(asked, a.Single)
 	if err != nil || !size.Enough || a.Figure("water made by condensation") > 0 {
 		return ""
@@ -120,7 +124,7 @@ func (a *Answer) takenApart() string {
 
 func (a *Answer) asked() routes.Asked {
 	q := a.Question
-	return routes.Asked{Stage: routes.Stage{Kind: a.Kind, Agent: a.Agent}, Goal: q.Goal, DoseKgPerM3: q.DoseKgPerM3, TimeS: q.TimeS, Stirred: q.Stirred, ResidualLow: q.Activation.Low, ResidualHigh: q.Activation.High}
+	return routes.Asked{Stage: routes.Stage{Kind: a.Kind, Agent: a.Agent}, Goal: q.Goal, DoseKgPerM3: q.DoseKgPerM3, TimeS: q.TimeS, Stirred: q.Stirred, Powder: q.Powder, Charges: q.Charges, ResidualLow: q.Activation.Low, ResidualHigh: q.Activation.High}
 }
 
 // ignitionMarginK is kept between an oven and the autoignition temperature of
@@ -254,8 +258,14 @@ func grams(lowKg, highKg float64) string {
 func (a *Answer) adviseKeeping() {
 	volume := steps.LotVolume(a.Case.Mixture, a.Out, a.Question.TempK)
 	store := a.Case.Store(&routes.Run{WaterOut: a.Out.Water(), LitresDelivered: volume * 1e3})
-	a.tell("to keep", "under dry gas: with room air (%s) the first tenth drawn adds %s",
-		a.Case.Catalog.Practice["site-humidity"].Text, quantity.FormatWater(store.After(volume/10, 0)-a.Out.Water()))
+	a.tell("to keep", "under dry gas: with room air (%s) the first tenth drawn adds %s, %s for each litre of it; a day under the closure adds about %s (memory)",
+		a.Case.Catalog.Practice["site-humidity"].Text, quantity.FormatWater(store.After(volume/10, 0)-a.Out.Water()),
+		quantity.FormatWater(store.PerLitre()), quantity.FormatWater(store.LeakPerDay))
+	if goal := a.Question.Goal; given(goal) && a.Out.Water() < goal*(1-1e-6) {
+		if use, err := store.UseBy(goal); err == nil {
+			a.tell("to keep", "it passes %s with %s left of it, or undrawn after %s d: use it by then", quantity.FormatWater(goal), quantity.FormatVolume(use.LeastVolumeM3), quantity.Significant(use.Days, 2))
+		}
+	}
 }
 
 // adviseReaction says what the water is to a reaction.

@@ -19,7 +19,7 @@ import (
 var typed = map[string][]string{
 	"water":       {"225 mg/kg", "2 %", "0.4 mmol/L", "49 %", "0 mg/kg", "5", "nan mg/kg", "1e400 mg/kg", "-3 ppm", "2 % V/V", "1 mol %", "5 ppb"},
 	"to":          {"20 mg/kg", "0.01 mg/kg", "1 %", "60 %", "x"},
-	"dose":        {"100 g/L", "0.02 g/L", "1000 g/L", "1 kg", "2 %"},
+	"dose":        {"100 g/L", "0.02 g/L", "1000 g/L", "1 kg", "2 %", "10 % m/m", "5 % m/v"},
 	"hours":       {"24", "2 min", "183 d", "1e9", "0", "soon"},
 	"volume":      {"1 L", "0.05 L", "10 m3", "1 gal"},
 	"free-water":  {"0 mL", "100 mL", "2 L"},
@@ -29,8 +29,9 @@ var typed = map[string][]string{
 	"power":       {"1.6 kW", "10 W", "100 kW"},
 	"peroxide":    {"0 mg/L", "8 mg/L", "0 ppm"},
 	"height":      {"8 cm", "5 m"},
-	"activated":   {"300 C", "300 C closed hot", "opened-tin", "150 C, left open, 400 d", "20 C vacuum 1 Pa", "650 C closed hot", ","},
+	"activated":   {"300 C", "300 C closed hot", "opened-tin", "150 C, left open, 400 d", "20 C vacuum 1 Pa", "residual 1.5 g/100 g", "residual 0 g/100 g, 572 F", "residual 1", "650 C closed hot", ","},
 	"reagent":     {"0.5 mol", "0 mol"},
+	"charges":     {"1", "2", "5", "0", "many"},
 }
 
 var agents = map[steps.Kind][]string{
@@ -62,7 +63,8 @@ func TestAnyQuestion(t *testing.T) {
 				flags[name] = rapid.SampledFrom(typed[name][:2]).Draw(rt, name)
 			}
 		}
-		q, err := bench.Read(c, bench.Request{Kind: string(kind), Solvent: c.Solvents[rapid.SampledFrom(solvents).Draw(rt, "solvent")], Flags: flags})
+		q, err := bench.Read(c, bench.Request{Kind: string(kind), Solvent: c.Solvents[rapid.SampledFrom(solvents).Draw(rt, "solvent")], Flags: flags,
+			Stirred: rapid.Bool().Draw(rt, "stirred") && kind == steps.Soak, Powder: rapid.Bool().Draw(rt, "powder") && kind == steps.Soak})
 		if err != nil {
 			toldWhole(rt, err)
 			return

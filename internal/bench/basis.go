@@ -52,6 +52,9 @@ func (a *Answer) cite() {
 	case steps.Reactive:
 		a.restsOnReaction()
 	}
+	if a.Kind != steps.Settle {
+		a.habit("water through the closure of a store, in a week", "storage-rise-septum")
+	}
 	if a.Question.Agent != nil {
 		v, _ := a.Case.Catalog.Verdict(s, a.Agent)
 		a.rests("may meet "+s.Name, v.Word+": "+v.Reason, v.Origin)

@@ -89,6 +89,57 @@ func TestEveryPair(t *testing.T) {
 	t.Logf("%d computed, %d refused", computed, refused)
 }
 
+// Every soak that is computed for beads at rest is computed in charges and for a
+// stirred powder too, for every solvent over every sorbent, and two half charges
+// for a day each leave no more than one whole for a day.
+func TestEverySoakInEveryForm(t *testing.T) {
+	c := shelf(t)
+	forms := []bench.Request{{Flags: map[string]string{}}, {Flags: map[string]string{"charges": "2"}}, {Stirred: true, Powder: true, Flags: map[string]string{}}}
+	computed := 0
+	for _, solvent := range slices.Sorted(maps.Keys(c.Solvents)) {
+		s := c.Solvents[solvent]
+		for _, agent := range slices.Sorted(maps.Keys(c.Agents)) {
+			if s.Water == nil || c.Agents[agent].Isotherm == nil {
+				continue
+			}
+			var out []float64
+			for _, form := range forms {
+				form.Kind, form.Solvent, form.Flags = "soak", s, maps.Clone(form.Flags)
+				maps.Copy(form.Flags, map[string]string{"agent": agent, "water": "200 mg/kg", "dose": "100 g/L", "hours": "24",
+					"temperature": fmt.Sprintf("%.0f C", math.Max(20, s.Pure.MeltingK-273.15+3))})
+				q, err := bench.Read(c, form)
+				if err != nil {
+					t.Fatalf("%s over %s: %v", solvent, agent, err)
+				}
+				a, err := bench.Ask(c, q)
+				var refusal *bench.Refusal
+				if errors.As(err, &refusal) && refusal.Reason != "" {
+					continue
+				}
+				if err != nil {
+					t.Errorf("%s over %s: %v", solvent, agent, err)
+					continue
+				}
+				plausible(t, a)
+				out = append(out, a.Out.Water())
+			}
+			if len(out) != 0 && len(out) != len(forms) {
+				t.Errorf("%s over %s: only %d of %d forms were computed", solvent, agent, len(out), len(forms))
+			}
+			if len(out) == len(forms) {
+				computed++
+				if s.Class != "ketone" && out[1] > out[0]*(1+1e-9) {
+					t.Errorf("%s over %s: one charge leaves %g, two halves %g", solvent, agent, out[0], out[1])
+				}
+			}
+		}
+	}
+	if computed < 150 {
+		t.Errorf("only %d pairs: is the grid still whole?", computed)
+	}
+	t.Logf("%d pairs in %d forms", computed, len(forms))
+}
+
 // plausible: nothing gets wetter, nothing goes below the floor of its step, the
 // band holds the outlet, and there are cautions and sources.
 func plausible(t *testing.T, a *bench.Answer) {

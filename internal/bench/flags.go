@@ -22,7 +22,7 @@ var uses = map[steps.Kind]use{
 	steps.Settle:   {takes: []string{"free-water"}},
 	steps.Trap:     {takes: []string{"to", "free-water", "power", "receiver", "pressure", "peroxide"}},
 	steps.Salt:     {takes: []string{"agent", "to", "dose", "hours", "free-water"}, needs: []string{"agent"}, agents: []string{"salt"}},
-	steps.Soak:     {takes: []string{"agent", "to", "dose", "hours", "stirred", "activated", "height", "free-water"}, needs: []string{"agent"}, agents: []string{"sieve", "oxide"}},
+	steps.Soak:     {takes: []string{"agent", "to", "dose", "hours", "stirred", "activated", "height", "free-water", "charges", "powder"}, needs: []string{"agent"}, agents: []string{"sieve", "oxide"}},
 	steps.Column:   {takes: []string{"agent", "to", "dose", "activated"}, needs: []string{"agent"}, agents: []string{"sieve", "oxide"}},
 	steps.Reactive: {takes: []string{"agent", "dose", "hours", "power", "pressure", "peroxide"}, needs: []string{"agent"}, agents: []string{"reactive"}},
 }
@@ -62,8 +62,10 @@ func (r *reader) fit() {
 			odd = append(odd, name)
 		}
 	}
-	if r.q.Stirred && !slices.Contains(allowed, "stirred") {
-		odd = append(odd, "stirred")
+	for name, on := range map[string]bool{"stirred": r.q.Stirred, "powder": r.q.Powder} {
+		if on && !slices.Contains(allowed, name) {
+			odd = append(odd, name)
+		}
 	}
 	slices.Sort(odd)
 	for _, name := range odd {

@@ -16,6 +16,7 @@ type Request struct {
 	Solvent *catalog.Solvent  // nil where it was not found, which is told elsewhere
 	Flags   map[string]string // as typed, by name; a flag that was not given is not in it
 	Stirred bool
+	Powder  bool // of a soak, in place of beads
 }
 
 // Question is a request that was read, in SI units. NaN stands for what was not
@@ -25,6 +26,8 @@ type Question struct {
 	Solvent *catalog.Solvent
 	Agent   *catalog.Agent // nil where the step takes none
 	Stirred bool
+	Powder  bool
+	Charges int // of sorbent, one after the other; 0 where the step takes none
 
 	Water, Goal           float64 // kg/kg
 	VolumeM3, FreeWaterM3 float64

@@ -4,6 +4,7 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"strconv"
 	"strings"
 
 	"parch/catalog"
@@ -29,7 +30,7 @@ func Read(c *catalog.Catalog, req Request) (*Question, error) {
 	if err != nil {
 		return nil, err
 	}
-	r := &reader{cat: c, flags: req.Flags, q: &Question{Kind: k, Solvent: req.Solvent, Stirred: req.Stirred, water: &c.Solvents["water"].Pure}}
+	r := &reader{cat: c, flags: req.Flags, q: &Question{Kind: k, Solvent: req.Solvent, Stirred: req.Stirred, Powder: req.Powder, water: &c.Solvents["water"].Pure}}
 	r.fit()
 	r.conditions()
 	r.agent()
@@ -37,6 +38,7 @@ func Read(c *catalog.Catalog, req Request) (*Question, error) {
 	if req.Solvent != nil {
 		r.contents()
 	}
+	r.dose()
 	r.solvable()
 	if len(r.mistakes) > 0 {
 		return nil, errors.Join(r.mistakes...)
@@ -117,8 +119,26 @@ func (r *reader) amounts() {
 		r.mistake(fmt.Sprintf("--free-water: %s is as much as the volume (%s) or more", quantity.Quote(r.flags["free-water"]), quantity.FormatVolume(q.VolumeM3)), "")
 	}
 	q.ReagentMol = r.measure("reagent", quantity.Amount, anyReagent, math.NaN())
-	q.DoseKgPerM3 = r.measure("dose", quantity.MassConcentration, anyDose, math.NaN())
+	q.DoseKgPerM3 = math.NaN()
 	q.TimeS = r.time()
+	q.Charges = r.charges()
+}
+
+// mostCharges is as many as anybody decants.
+const mostCharges = 5
+
+// charges reads how many charges make up the dose.
+func (r *reader) charges() int {
+	text, ok := r.flags["charges"]
+	if !ok {
+		return 1
+	}
+	n, err := strconv.Atoi(strings.TrimSpace(text))
+	if err != nil || n < 1 || n > mostCharges {
+		r.mistake(fmt.Sprintf("--charges: %s is not a number of charges; allowed: 1 to %d", quantity.Quote(text), mostCharges), "")
+		return 1
+	}
+	return n
 }
 
 // time reads a time; a bare number is hours, as the flag is called.
@@ -181,6 +201,8 @@ func (r *reader) solvable() {
 		switch {
 		case dose && hours && to:
 			r.mistake("--dose, --hours and --to are one too many", "give two of them; the third is solved for")
+		case r.q.Charges > 1 && !dose && !hours:
+			r.mistake("--charges needs --dose or --hours", "--dose is that of all charges together, --hours the time of each")
 		case !to && !(dose && hours):
 			r.mistake("soak needs --dose and --hours, or --to", `--to alone sizes the dose for overnight, 24 h and 72 h; with --hours it solves for the dose, with --dose for the time`)
 		}

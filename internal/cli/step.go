@@ -27,10 +27,12 @@ func (p *program) step() *cli.Command {
 			&cli.StringFlag{Name: "water", Usage: "water `W` of the lot: mg/kg, ppm (mass), % m/m, mg/L, mmol/L"},
 			&cli.StringFlag{Name: "to", Usage: "water `W` wanted: solves for the dose or the time"},
 			&cli.StringFlag{Name: "agent", Usage: "drying agent `A`, such as sieve-3a"},
-			&cli.StringFlag{Name: "dose", Usage: "dose `D` of the agent per volume, such as \"100 g/L\""},
+			&cli.StringFlag{Name: "dose", Usage: "dose `D` of the agent per volume, such as \"100 g/L\", \"10 % m/v\" or \"10 % m/m\""},
 			&cli.StringFlag{Name: "hours", Usage: "time `T` of soak, salt or reflux; a bare number is hours"},
+			&cli.StringFlag{Name: "charges", Usage: "number `N` of equal charges that make up the dose, one after the other, each for --hours"},
 			onOff("stirred", "stir the soak; else it stands still"),
-			&cli.StringFlag{Name: "activated", Usage: "`HISTORY` of the sieve, such as \"300 C closed hot\""},
+			onOff("powder", "the sieve is a powder; else it is beads"),
+			&cli.StringFlag{Name: "activated", Usage: "`HISTORY` of the sieve, such as \"300 C closed hot\" or \"residual 1.5 g/100 g\""},
 			&cli.StringFlag{Name: "volume", Usage: "volume `V` of the lot (default: 1 L)"},
 			&cli.StringFlag{Name: "free-water", Usage: "volume `V` of free water beside the lot"},
 			&cli.StringFlag{Name: "height", Usage: "height `H` of the liquid (default: as deep as wide)"},
@@ -60,7 +62,7 @@ func (p *program) runStep(c *cli.Context) error {
 	}
 	flags, err := flagsOfStep(c)
 	problems := []error{err}
-	request := bench.Request{Kind: kind, Flags: flags, Stirred: c.Bool("stirred")}
+	request := bench.Request{Kind: kind, Flags: flags, Stirred: c.Bool("stirred"), Powder: c.Bool("powder")}
 	if c.IsSet("solvent") {
 		request.Solvent, err = findSolvent(cat, c.String("solvent"))
 		problems = append(problems, err)

@@ -25,6 +25,7 @@ func (r *reader) history(lot *document.Node, n *document.Node, out *Lot) {
 			Key: lot.Path() + ".sieve history", Text: usual.Text, Source: usual.ResidualKgPerKg.Source,
 			Confidence: string(usual.ResidualKgPerKg.Confidence), Date: r.cat.Date,
 		})
+	case r.stated(n, out):
 	case strings.ContainsAny(firstOf(n.Text()), "0123456789+-.") && len(curve) > 0:
 		r.activatedAt(n, curve, out)
 	default:
@@ -47,7 +48,7 @@ func (r *reader) namedHistory(n *document.Node, out *Lot) {
 		}
 		keys = append(keys, h.Key)
 	}
-	n.Fail("%s is not a history known here; give the temperature of the activation (\"300 °C\") or one of: %s",
+	n.Fail("%s is not a history known here; give the temperature of the activation (\"300 °C\"), what it holds (\"residual 1.5 g/100 g\") or one of: %s",
 		quantity.Quote(typed), strings.Join(keys, ", "))
 }
 

@@ -16,6 +16,8 @@ const (
 const (
 	noteppm     = `"ppm" read as mg/kg (by mass)`
 	notePercent = `"%" read as per cent by mass (% m/m)`
+
+	notePerVolume = `"% m/v" read as g per 100 mL`
 )
 
 // units lists, per dimension, what may be written; the first is the one that messages suggest.
@@ -62,7 +64,7 @@ var units = map[Dimension][]unit{
 	Share: {{symbol: "%", per: 1e2}},
 	MassConcentration: {
 		{symbol: "g/L", factor: 1}, {symbol: "mg/L", per: 1e3}, {symbol: "kg/m3", factor: 1}, {symbol: "g/mL", factor: 1e3},
-		{symbol: "mg/mL", factor: 1}, {symbol: "mg/m3", per: 1e6}, {symbol: "g/m3", per: 1e3},
+		{symbol: "mg/mL", factor: 1}, {symbol: "mg/m3", per: 1e6}, {symbol: "g/m3", per: 1e3}, {symbol: "% m/v", factor: 10, note: notePerVolume},
 	},
 	// A month and a week are counted as people plan: twelve and fifty-two to the year.
 	PerYear: {{symbol: "/yr", factor: 1}, {symbol: "/month", factor: 12}, {symbol: "/week", factor: 52}},
@@ -100,6 +102,7 @@ var spellings = map[string]string{
 	"hour": "h", "hours": "h", "hr": "h", "hrs": "h", "minute": "min", "minutes": "min", "second": "s", "seconds": "s", "sec": "s",
 	"day": "d", "days": "d", "weeks": "week", "year": "yr", "years": "yr", "a": "yr",
 	"metre": "m", "µm": "um", "μm": "um",
+	"% m/V": "% m/v", "%m/v": "% m/v", "%m/V": "% m/v", "% w/v": "% m/v", "%w/v": "% m/v",
 	"g/l": "g/L", "mg/l": "mg/L", "g/ml": "g/mL", "mg/ml": "mg/mL", "kg/m³": "kg/m3", "g/m³": "g/m3", "mg/m³": "mg/m3", "g/cm³": "g/cm3", "kg/l": "kg/L",
 	"/year": "/yr", "/a": "/yr", "/y": "/yr", "per year": "/yr", "1/yr": "/yr", "1/year": "/yr", "1/month": "/month", "per month": "/month", "1/week": "/week", "per week": "/week",
 	"l/min": "L/min", "ml/min": "mL/min", "l/h": "L/h", "m³/h": "m3/h", "m³/s": "m3/s",
@@ -121,13 +124,13 @@ var refused = map[Dimension]map[string]string{
 	WaterContent: {
 		"mg/L": needsDensity, "mg/l": needsDensity, "g/L": needsDensity, "g/l": needsDensity, "mmol/L": needsDensity, "mmol/l": needsDensity,
 		"mM": needsDensity, "% V/V": needsDensity, "% v/v": needsDensity, "vol%": needsDensity, "vol %": needsDensity, "%V/V": needsDensity, "%v/v": needsDensity,
-		"% m/V": needsDensity, "% w/v": needsDensity,
+		"% m/V": needsDensity, "% m/v": needsDensity, "% w/v": needsDensity,
 		"mol %": "is an amount of substance; give the water by mass", "mol%": "is an amount of substance; give the water by mass",
 		"ppb": `is too fine to be measured; write "mg/kg"`,
 	},
 	MassConcentration: {
 		"ppm": `is not clear for a solution; test strips read mg/L: write "mg/L"`,
-		"%":   `is not clear for a solution; write "g/L"`,
+		"%":   `is not clear: by mass of solvent ("% m/m") or by its volume ("% m/v")`,
 	},
 	PerYear: {
 		"/day": "depends on the working days of the year; give the number per week, month or year",

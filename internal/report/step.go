@@ -43,10 +43,13 @@ func stepTitle(a *bench.Answer) string {
 	q := a.Question
 	title := fmt.Sprintf("%s: %s of %s", sentence(string(q.Kind)), quantity.FormatVolume(q.VolumeM3), q.Solvent.Name)
 	if q.Agent != nil {
-		title += fmt.Sprintf(", %s of %s", dose(&a.Outcome, q.VolumeM3), q.Agent.Name)
+		title += fmt.Sprintf(", %s of %s", dose(&a.Outcome, q.VolumeM3), q.Sorbent())
 	}
 	if q.Kind == steps.Soak {
 		still := map[bool]string{true: "stirred", false: "still"}[q.Stirred]
+		if q.Charges > 1 {
+			title += fmt.Sprintf(" in %d charges", q.Charges)
+		}
 		title += fmt.Sprintf(", %s, %s h", still, quantity.Significant(a.Course[len(a.Course)-1].Hours, 3))
 	}
 	return title + ", at " + temperature(q)
@@ -87,11 +90,19 @@ func (p *page) stepResult(a *bench.Answer) {
 	} else if a.Why != steps.AtTarget {
 		p.topic("Between", "no band is known")
 	}
-	p.topic("Floor", "%s", quantity.FormatWater(a.Floor))
+	p.topic("Floor", "%s", floor(a))
 	p.topic("Stops", "%s", whyItStops(&a.Outcome))
 	if a.RuledBy != "" && a.RuledBy != a.WhyText {
 		p.topic("Turns on", "%s", a.RuledBy)
 	}
+}
+
+// floor of a step; an empty sorbent has none that matters.
+func floor(a *bench.Answer) string {
+	if q := a.Question; q.Agent != nil && q.Agent.Isotherm != nil && q.Activation.KgPerKg == 0 {
+		return "none: the sorbent is taken to be empty"
+	}
+	return quantity.FormatWater(a.Floor)
 }
 
 func freeWater(q *bench.Question) string {

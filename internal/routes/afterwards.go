@@ -19,11 +19,22 @@ func (c *Case) Life(run *Run, place int) (steps.SieveLife, error) {
 	}, lifeBatches)
 }
 
+// A lot of the size of a drum is kept in one, a smaller one under a septum.
+const (
+	leastDrumL = 100.0
+	daysPerWk  = 7.0
+)
+
 // Store is the product in the vessel it is kept in, drawn on in the room's air.
 func (c *Case) Store(run *Run) assay.Store {
 	room := c.Job.Site.RoomK
+	closure := "storage-rise-septum"
+	if run.LitresDelivered >= leastDrumL {
+		closure = "storage-rise-drum"
+	}
 	return assay.Store{
-		VolumeM3: run.LitresDelivered * 1e-3, Water: run.WaterOut, KgPerM3: c.Mixture.Solvent.DensityKgPerM3.At(room),
+		LeakPerDay: c.practice(closure) / daysPerWk,
+		VolumeM3:   run.LitresDelivered * 1e-3, Water: run.WaterOut, KgPerM3: c.Mixture.Solvent.DensityKgPerM3.At(room),
 		AirWaterKgPerM3: assay.AirWaterKgPerM3(room, c.Job.Site.Humidity),
 	}
 }

@@ -18,6 +18,8 @@ type Asked struct {
 	DoseKgPerM3 float64
 	TimeS       float64
 	Stirred     bool
+	Powder      bool // of a soak: not beads
+	Charges     int  // of a soak, one after the other, that make up the dose; 0: one
 
 	ResidualLow, ResidualHigh float64 // kg/kg, the band of the lot's residual loading
 }

@@ -7,20 +7,21 @@ import (
 // Again is the water (kg/kg) that a soak's charge would leave in the next such
 // lot if it was used as it is.
 func (c *Case) Again(a Asked, s Single) (float64, bool) {
-	sorbent := c.sorbent(a.Agent, Discard)
+	sorbent, rig := c.soakOf(a)
 	sorbent.ResidualKgPerKg = s.Figure("loading after") / 100
-	o, err := steps.SoakOver(c.Mixture, c.Feed, s.Figure("dose"), s.Course[len(s.Course)-1].Hours*3600, sorbent, c.soakRig(a.Stirred))
+	o, err := steps.SoakOver(c.Mixture, c.Feed, s.Figure("dose"), s.Course[len(s.Course)-1].Hours*3600, sorbent, rig)
 	return o.Out.Water(), err == nil
 }
 
 // SizeOf takes a soak apart: how much sorbent the goal for which its dose was
 // solved, or else its outlet, needs in its time for capacity and for speed.
 func (c *Case) SizeOf(a Asked, s Single) (steps.SoakSize, error) {
-	sorbent, goal := c.sorbent(a.Agent, Discard), a.Goal
+	sorbent, rig := c.soakOf(a)
+	goal := a.Goal
 	if given(a.DoseKgPerM3) || !given(goal) {
 		goal, sorbent.MinDoseKgPerM3, sorbent.MaxDoseKgPerM3 = s.Out.Water(), 0, 2*s.Figure("dose")
 	}
-	sizes, err := steps.SizeSoak(c.Mixture, c.Feed, goal, sorbent, c.soakRig(a.Stirred), s.Course[len(s.Course)-1].Hours*3600)
+	sizes, err := steps.SizeSoak(c.Mixture, c.Feed, goal, sorbent, rig, s.Course[len(s.Course)-1].Hours*3600)
 	if err != nil {
 		return steps.SoakSize{}, err
 	}

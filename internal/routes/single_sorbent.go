@@ -15,14 +15,16 @@ const rateBand = 2
 // singleSoak has two of dose, time and goal, or the goal alone: then the dose is
 // sized for the times that people plan with.
 func (c *Case) singleSoak(a Asked, s *Single) (err error) {
-	sorbent, rig := c.sorbent(a.Agent, Discard), c.soakRig(a.Stirred)
+	sorbent, rig := c.soakOf(a)
 	switch {
 	case given(a.DoseKgPerM3) && given(a.TimeS):
-		s.Outcome, err = steps.SoakOver(c.Mixture, c.Feed, a.DoseKgPerM3, a.TimeS, sorbent, rig)
+		s.Outcome, err = c.over(a, a.DoseKgPerM3, a.TimeS, sorbent, rig)
 	case given(a.DoseKgPerM3) && given(a.Goal):
-		s.Outcome, err = steps.SoakUntil(c.Mixture, c.Feed, a.Goal, a.DoseKgPerM3, sorbent, rig)
+		s.Outcome, err = steps.SeriesUntil(c.Mixture, c.Feed, a.Goal, a.DoseKgPerM3, a.Charges, sorbent, rig)
 	case given(a.TimeS) && given(a.Goal):
-		s.Outcome, err = steps.SoakFor(c.Mixture, c.Feed, a.Goal, a.TimeS, sorbent, rig)
+		s.Outcome, err = steps.SeriesFor(c.Mixture, c.Feed, a.Goal, a.TimeS, a.Charges, sorbent, rig)
+	case a.Charges > 1:
+		return fmt.Errorf("%w: several charges need their dose or their time", ErrAsked)
 	case given(a.Goal):
 		err = c.sizeSoak(a.Goal, s, sorbent, rig)
 	default:
@@ -35,7 +37,27 @@ func (c *Case) singleSoak(a Asked, s *Single) (err error) {
 	if a.Stirred {
 		s.EnergyKWh += float64(rig.Vessels) * c.practice("stirrer-power") * timeS / 3.6e6
 	}
-	return c.bandOfSoak(a, s, timeS, sorbent, rig)
+	return c.bandOfSoak(a, s, timeS/float64(max(1, a.Charges)), sorbent, rig)
+}
+
+// soakOf is what an asked soak is done with.
+func (c *Case) soakOf(a Asked) (steps.Sorbent, steps.SoakRig) {
+	sorbent, rig := c.sorbent(a.Agent, Discard), c.soakRig(a.Stirred)
+	if a.Powder {
+		sorbent.BeadDiameterM, sorbent.HoldUpM3PerKg = c.practice("powder-diameter"), c.practice("powder-hold-up")
+		sorbent.DispersionPerS = c.practice("stirred-slurry-rate")
+		rig.AttendedS += c.practice("salt-attended") // filtered off as a salt is
+	}
+	return sorbent, rig
+}
+
+// over stands the lot over a dose, whole or in equal charges that each have the time.
+func (c *Case) over(a Asked, doseKgPerM3, timeS float64, sorbent steps.Sorbent, rig steps.SoakRig) (steps.Outcome, error) {
+	if a.Charges <= 1 {
+		return steps.SoakOver(c.Mixture, c.Feed, doseKgPerM3, timeS, sorbent, rig)
+	}
+	kg := doseKgPerM3 * steps.LotVolume(c.Mixture, c.Feed, rig.TempK)
+	return steps.SoakSeries(c.Mixture, c.Feed, steps.EqualCharges(a.Charges, kg, timeS), sorbent, rig)
 }
 
 // sizeSoak sizes the dose for each of the usual times. The outcome is that of the
@@ -65,7 +87,7 @@ func (c *Case) bandOfSoak(a Asked, s *Single, timeS float64, sorbent steps.Sorbe
 	at := func(end sorbentEnd, rate float64) (float64, error) {
 		rig := rig
 		rig.CondensationPerS /= rate
-		o, err := steps.SoakOver(c.Mixture, c.Feed, s.Figure("dose"), math.Min(timeS*rate, longestSoakHours*3600), end.apply(sorbent), rig)
+		o, err := c.over(a, s.Figure("dose"), math.Min(timeS*rate, longestSoakHours*3600), end.apply(sorbent), rig)
 		return c.outletOr(o, err)
 	}
 	good, bad, told := c.endsOf(a)

@@ -3,6 +3,8 @@ package steps
 import (
 	"fmt"
 	"math"
+
+	"parch/internal/quantity"
 )
 
 const saltPoints = 13
@@ -43,11 +45,22 @@ func (b *saltBath) run(doseKgPerM3, goal float64) Outcome {
 	}
 	o.Why, o.WhyText = b.reason(goal, water, doseKgPerM3, h)
 	o.RuledBy = "claim: a salt is held to its published removal, not to its equilibrium"
+	o.Warnings = append(o.Warnings, b.scaled(doseKgPerM3)...)
 	o.Figures = b.figures(doseKgPerM3, takenKg, heldKg/density, rinse.throughKgDried/density, h)
 	if rinse.addedKg > 0 {
 		o.Warnings = append(o.Warnings, fmt.Sprintf("the rinse takes %.3g L of dried solvent off the cake and leaves as much fresh solvent on it: the volume lost stays the same", rinse.throughKgDried/density*litrePerM3))
 	}
 	return o
+}
+
+// scaled says that a claim was scaled down from the dose and the time of its figure.
+func (b *saltBath) scaled(doseKgPerM3 float64) []string {
+	r := b.rules
+	if doseKgPerM3 == 0 || doseKgPerM3 >= r.ClaimDoseKgPerM3*(1-1e-9) && b.rig.TimeS >= r.ClaimTimeS*(1-1e-9) {
+		return nil
+	}
+	return []string{fmt.Sprintf("the share that %s removes is published for %s in %.3g min; that less salt or less time removes less of it, as a first order in both, is an assumption",
+		b.salt.Key, quantity.FormatConcentration(r.ClaimDoseKgPerM3), r.ClaimTimeS/60)}
 }
 
 func (b *saltBath) figures(doseKgPerM3, takenKg, heldM3, recoveredM3 float64, h hydration) []Figure {

@@ -43,7 +43,100 @@ func series(m *thermo.Mixture, feed Lot, charges []Charge, sorbent Sorbent, rig 
 	}
 	total.Why = AtTime
 	total.WhyText = fmt.Sprintf("%s after %d charges", quantity.FormatWater(total.Out.Water()), len(charges))
+	total.Figures = append([]Figure{
+		{"dose", "g/L", total.AgentKg / LotVolume(m, feed, rig.TempK)},
+		{"charges", "", float64(len(charges))},
+		{"loading before", "g/100 g", 100 * sorbent.ResidualKgPerKg},
+	}, total.Figures...)
+	if madeKg := total.Balance.WaterMadeKg; madeKg > 0 {
+		total.Figures = append(total.Figures, Figure{"water made by condensation", "g", madeKg * 1e3})
+	}
 	return total, nil
+}
+
+// SeriesFor stands a lot over n equal charges, each for timeS, of the least dose
+// that reaches goal (kg/kg) with the last of them; or over n of the largest
+// practical doses where none does. Each charge is at least the least usual dose.
+func SeriesFor(m *thermo.Mixture, feed Lot, goal, timeS float64, n int, sorbent Sorbent, rig SoakRig) (Outcome, error) {
+	if n <= 1 {
+		return SoakFor(m, feed, goal, timeS, sorbent, rig)
+	}
+	most := float64(n) * sorbent.MaxDoseKgPerM3
+	if err := errors.Join(checkDose(sorbent.MaxDoseKgPerM3), checkTime(timeS), checkAmount("a goal", "mg/kg", goal*mgPerKg, 0, mgPerKg)); err != nil {
+		return Outcome{}, err
+	}
+	volumeM3 := LotVolume(m, feed, rig.TempK)
+	over := func(doseKgPerM3 float64) (Outcome, error) {
+		return SoakSeries(m, feed, EqualCharges(n, doseKgPerM3*volumeM3, timeS), sorbent, rig)
+	}
+	dose := float64(n) * math.Max(sorbent.MinDoseKgPerM3, leastDose)
+	o, err := over(dose)
+	if err == nil && o.Out.Water() <= goal {
+		return reachedBySeries(o, n), nil
+	}
+	if o, err = over(most); err != nil || o.Out.Water() > goal {
+		return missedBySeries(o, goal, n), err
+	}
+	lnDose, err := thermo.Brent(func(lnDose float64) float64 {
+		o, err := over(math.Exp(lnDose))
+		if err != nil {
+			return math.NaN()
+		}
+		return math.Log(o.Out.Water() / goal)
+	}, math.Log(dose), math.Log(most), 1e-10)
+	if err != nil {
+		return Outcome{}, err
+	}
+	o, err = over(math.Exp(lnDose))
+	return reachedBySeries(o, n), err
+}
+
+// SeriesUntil stands a lot over n equal charges that make up a dose until it has
+// come to goal (kg/kg), each charge for the same time.
+func SeriesUntil(m *thermo.Mixture, feed Lot, goal, doseKgPerM3 float64, n int, sorbent Sorbent, rig SoakRig) (Outcome, error) {
+	if n <= 1 {
+		return SoakUntil(m, feed, goal, doseKgPerM3, sorbent, rig)
+	}
+	if err := errors.Join(checkDose(doseKgPerM3), checkAmount("a goal", "mg/kg", goal*mgPerKg, 0, mgPerKg)); err != nil {
+		return Outcome{}, err
+	}
+	kg := doseKgPerM3 * LotVolume(m, feed, rig.TempK)
+	over := func(lnTimeS float64) (Outcome, error) {
+		return SoakSeries(m, feed, EqualCharges(n, kg, math.Exp(lnTimeS)), sorbent, rig)
+	}
+	longest := math.Log(longestSoakS / float64(n))
+	o, err := over(longest)
+	if err != nil || o.Out.Water() > goal {
+		return missedBySeries(o, goal, n), err
+	}
+	lnTimeS, err := thermo.Brent(func(lnTimeS float64) float64 {
+		o, err := over(lnTimeS)
+		if err != nil {
+			return math.NaN()
+		}
+		return math.Log(o.Out.Water() / goal)
+	}, 0, longest, 1e-10)
+	if err != nil {
+		return Outcome{}, err
+	}
+	o, err = over(lnTimeS)
+	return reachedBySeries(o, n), err
+}
+
+func reachedBySeries(o Outcome, n int) Outcome {
+	o.Why = AtTarget
+	o.WhyText = fmt.Sprintf("%s with the last of %d charges", quantity.FormatWater(o.Out.Water()), n)
+	return o
+}
+
+func missedBySeries(o Outcome, goal float64, n int) Outcome {
+	g, left := quantity.FormatWater(goal), quantity.FormatWater(o.Out.Water())
+	if o.Why = AtTime; goal <= o.Floor {
+		o.Why, o.WhyText = AtFloor, fmt.Sprintf("floor: the sieve's residual loading leaves %s, whatever the number of charges", quantity.FormatWater(o.Floor))
+		return o
+	}
+	o.WhyText = fmt.Sprintf("time: %d charges leave %s, not %s; more time, a stirrer or one charge more", n, left, g)
+	return o
 }
 
 // follow adds the next charge to a series.

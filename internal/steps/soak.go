@@ -47,10 +47,17 @@ func newBath(m *thermo.Mixture, feed Lot, sorbent Sorbent, rig SoakRig) (*bath, 
 	if rig.Stirred {
 		sherwood = stirredSherwood(s.reynolds(rig.RelativeVelocityMS, sorbent.BeadDiameterM), s.schmidt())
 	}
+	if !rig.Stirred && sorbent.DispersionPerS > 0 {
+		sorbent.BeadDiameterM = layerM // a powder that settles is reached through the top of its layer only
+	}
 	areaPerKg := 6 / sorbent.BeadDiameterM / sorbent.BeadKgPerM3
 	b.beadPerS = areaPerKg * inSeries(s.film(sherwood, sorbent.BeadDiameterM), insideBead(s, sorbent))
 	return b, nil
 }
+
+// layerM is the grain that a settled powder is taken for: a layer of it is no
+// better reached than a layer of the usual beads (assumption).
+const layerM = 2e-3
 
 // mixing is k_mix: slower in a taller still vessel, without bound in a stirred
 // one unless a powder is hard to keep suspended.

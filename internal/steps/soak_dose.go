@@ -124,8 +124,22 @@ const leastDose = 1e-6 // kg/m3, the lower end of the search
 //
 //	w_eq = (w - w_0 e)/(1 - e), e = exp(-K(m) t)
 func (b *bath) exact(d SoakDose, goal, timeS float64) (SoakDose, error) {
+	lnDose, err := thermo.Brent(b.spare(goal, timeS), math.Log(leastDose), math.Log(d.Dose), 1e-12)
+	if err != nil {
+		return d, err
+	}
+	d.Dose, d.Enough = math.Exp(lnDose), true
+	if least := b.sorbent.MinDoseKgPerM3; d.Dose < least {
+		d.Dose, d.AtLeast = least, true
+	}
+	return d, nil
+}
+
+// spare is the water (kg) that a dose of a logarithm could take beyond what it takes
+// on the way to goal in timeS; below zero where it is not enough.
+func (b *bath) spare(goal, timeS float64) func(lnDose float64) float64 {
 	feed := b.feed.Water()
-	spare := func(lnDose float64) float64 {
+	return func(lnDose float64) float64 {
 		dose := math.Exp(lnDose)
 		e := math.Exp(-b.rate(dose) * timeS)
 		eq := (goal - feed*e) / (1 - e)
@@ -135,15 +149,6 @@ func (b *bath) exact(d SoakDose, goal, timeS float64) (SoakDose, error) {
 		taken := b.feed.SolventKg * (feed/(1-feed) - eq/(1-eq))
 		return dose*b.volumeM3*(b.loading(eq)-b.sorbent.ResidualKgPerKg) - taken
 	}
-	lnDose, err := thermo.Brent(spare, math.Log(leastDose), math.Log(d.Dose), 1e-12)
-	if err != nil {
-		return d, err
-	}
-	d.Dose, d.Enough = math.Exp(lnDose), true
-	if least := b.sorbent.MinDoseKgPerM3; d.Dose < least {
-		d.Dose, d.AtLeast = least, true
-	}
-	return d, nil
 }
 
 // doseWithCondensation finds the smallest dose that reaches goal where more

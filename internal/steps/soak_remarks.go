@@ -24,6 +24,9 @@ func (b *bath) remark(o *Outcome, eq, timeS, doseKgPerM3, takenKg float64) error
 			o.Warnings = append(o.Warnings, fmt.Sprintf("taking up %s of water warms the vessel by up to %.0f K: add the sorbent in portions, vessel vented", quantity.FormatMass(takenKg), rise))
 		}
 	}
+	if b.sorbent.DispersionPerS > 0 && !b.rig.Stirred {
+		o.Warnings = append(o.Warnings, "the powder settles: mixing in the still vessel rules, and its layer is taken to be reached no better than beads (assumption); stir it, or take beads")
+	}
 	if b.rig.CondensationPerS > 0 {
 		b.remarkCondensation(o, eq, timeS, doseKgPerM3)
 	}

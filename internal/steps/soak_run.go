@@ -112,7 +112,7 @@ func (b *bath) reason(goal, out, floor, timeS float64, dose SoakDose) (Stop, str
 	}
 	eq, err := b.equilibrium(dose.Dose * b.volumeM3)
 	if err != nil || eq >= goal {
-		return AtCapacity, fmt.Sprintf("capacity: %.3g g/L, the largest practical dose, holds too little", dose.Dose)
+		return AtCapacity, fmt.Sprintf("capacity: %.3g g/L, the largest practical dose, holds too little; several charges, one after the other, hold more", dose.Dose)
 	}
 	wait := math.Ceil(math.Log((b.feed.Water()-eq)/(goal-eq)) / b.rate(dose.Dose) / secondsPerHour)
 	if b.rig.Stirred {

@@ -1,0 +1,64 @@
+package steps_test
+
+import (
+	"slices"
+	"strings"
+	"testing"
+
+	"parch/internal/steps"
+)
+
+// The dose found for several charges brings the last of them to the goal, and a
+// time found does too.
+func TestSeriesSolved(t *testing.T) {
+	m := fromPerry(t, "ethanol")
+	feed, sieve, rig := litres(m, 1, 1500e-6), sieve3A(t, 0.02), stirred(t, "ethanol")
+	dosed, err := steps.SeriesFor(m, feed, 20e-6, day(1), 2, sieve, rig)
+	if err != nil || dosed.Why != steps.AtTarget {
+		t.Fatalf("%q, %v", dosed.WhyText, err)
+	}
+	near(t, "reached", dosed.Out.Water(), 20e-6, 1e-6)
+	one, err := steps.SoakFor(m, feed, 20e-6, day(1), sieve, rig)
+	if err != nil || dosed.AgentKg >= one.AgentKg {
+		t.Errorf("two charges take %g kg, one %g: %v", dosed.AgentKg, one.AgentKg, err)
+	}
+	dose := dosed.Figure("dose")
+	timed, err := steps.SeriesUntil(m, feed, 20e-6, dose, 2, sieve, rig)
+	if err != nil {
+		t.Fatal(err)
+	}
+	near(t, "hours of each", (timed.HoursTotal-0.8)/2, 24, 1e-4)
+	for name, run := range map[string]func() (steps.Outcome, error){
+		"dose": func() (steps.Outcome, error) { return steps.SeriesFor(m, feed, 1e-6, day(1), 2, sieve, rig) },
+		"time": func() (steps.Outcome, error) { return steps.SeriesUntil(m, feed, 1e-6, 100, 2, sieve, rig) },
+	} {
+		if o, err := run(); err != nil || o.Why != steps.AtFloor || o.Out.Water() < 1e-6 {
+			t.Errorf("%s below the floor: %q, %v", name, o.WhyText, err)
+		}
+	}
+}
+
+// A stirred powder is as fast as it is kept suspended; one that settles is no
+// faster than beads.
+func TestPowder(t *testing.T) {
+	m := mixture(t, "toluene")
+	powder := sieve3A(t, 0.02)
+	powder.BeadDiameterM, powder.DispersionPerS = 50e-6, 2.0/3600
+	rate := func(sorbent steps.Sorbent, rig steps.SoakRig) float64 {
+		o, err := steps.SoakOver(m, litres(m, 1, 225e-6), 100, day(1), sorbent, rig)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if still := !rig.Stirred && sorbent.DispersionPerS > 0; still != hasWord(o.Warnings, "the powder settles") {
+			t.Errorf("warnings %q", o.Warnings)
+		}
+		return o.Figure("rate constant K")
+	}
+	still := bottle(t, "toluene", 0.08)
+	near(t, "stirred, 1/h", rate(powder, stirred(t, "toluene")), 2, 0.02)
+	near(t, "settled against beads", rate(powder, still), rate(sieve3A(t, 0.02), still), 1e-12)
+}
+
+func hasWord(all []string, word string) bool {
+	return slices.ContainsFunc(all, func(s string) bool { return strings.Contains(s, word) })
+}
