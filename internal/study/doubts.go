@@ -62,6 +62,11 @@ func (d *doubts) judge(all []Route, failed *job.FailedBatch) error {
 	}
 	for i := range all {
 		r := &all[i]
+		if r.Run.Meets { // as a search does: given settings then read the same surfaces
+			if _, err := d.search.Chance(&r.Run, d.limits); err != nil {
+				return fmt.Errorf("%s: %w", r.ID, err)
+			}
+		}
 		chance, err := d.all.Chance(&r.Run, d.limits)
 		if err != nil {
 			return fmt.Errorf("%s: %w", r.ID, err)
