@@ -120,9 +120,17 @@ type CarrierPlan struct {
 }
 
 func (p CarrierPlan) check() error {
-	switch {
-	case !(p.DoseKg > 0):
+	if !(p.DoseKg > 0) {
 		return fmt.Errorf("%w: a dose of %.3g kg", ErrNoCarrier, p.DoseKg)
+	}
+	if !(p.OrganicWater > 0) {
+		return fmt.Errorf("%w: a factor of %.3g on the water of the organic layer", ErrNoCarrier, p.OrganicWater)
+	}
+	return p.checkStrip()
+}
+
+func (p CarrierPlan) checkStrip() error {
+	switch {
 	case p.HeelShare < LeastHeel || p.HeelShare >= 1:
 		return fmt.Errorf("%w: a heel of %.3g %%; at least %.0f %% of the charge stays in the pot", ErrNoCarrier, 100*p.HeelShare, 100*LeastHeel)
 	case !(p.CarrierLimit > 0 && p.CarrierLimit < 1):
@@ -131,8 +139,6 @@ func (p CarrierPlan) check() error {
 		return fmt.Errorf("%w: %d stages; allowed are 0 to %d", ErrNoCarrier, p.Stages, MostStages)
 	case p.RefluxRatio < 0 || (p.Stages > 0 && p.RefluxRatio == 0):
 		return fmt.Errorf("%w: a column of %d stages needs a reflux ratio above 0", ErrNoCarrier, p.Stages)
-	case !(p.OrganicWater > 0):
-		return fmt.Errorf("%w: a factor of %.3g on the water of the organic layer", ErrNoCarrier, p.OrganicWater)
 	}
 	return nil
 }

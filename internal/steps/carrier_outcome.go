@@ -14,23 +14,32 @@ func (r *refluxing) outcome(feed Lot) Outcome {
 	trapS := r.trapped.heatJ / r.netW()
 	refluxS := math.Max(trapS, r.rules.ShortestRefluxS)
 	stripS := (r.s.heatJ - r.trapped.heatJ) / r.netW()
-	hotS := heatUpS + refluxS + stripS
 	drainings := math.Max(1, math.Ceil(r.aqueousM3()/r.rig.UsableVolumeM3-1e-9))
+	shutDownS, outK := r.rules.ShutDownS, r.rig.RoomK
+	kind, why, told := Trap, r.why, r.reached()
+	switch r.half {
+	case trapOnly:
+		shutDownS, outK = 0, r.near[0].TempK // the pot goes on hot
+	case stripOnly:
+		kind, why, told, drainings, refluxS = Forerun, r.stripWhy, r.stripped(), 0, 0
+	}
+	hotS := heatUpS + refluxS + stripS
 	o := Outcome{
-		Kind: Trap, In: feed, Floor: math.NaN(),
+		Kind: kind, In: feed, Floor: math.NaN(),
 		Carrier: r.m.Pure[inCarrier].Key, CarrierKg: r.plan.DoseKg,
-		Why: r.why, WhyText: r.reached(),
-		HoursTotal:    (r.rules.SetUpS + n*(hotS+r.rules.ShutDownS)) / secondsPerHour,
-		HoursAttended: (r.rules.SetUpS + n*(hotS*r.rules.AttendedShare+r.rules.ShutDownS+drainings*r.rules.DrainingS)) / secondsPerHour,
+		Why: why, WhyText: told,
+		HoursTotal:    (r.rules.SetUpS + n*(hotS+shutDownS+drainings*r.rules.DrainingS)) / secondsPerHour,
+		HoursAttended: (r.rules.SetUpS + n*(hotS*r.rules.AttendedShare+shutDownS+drainings*r.rules.DrainingS)) / secondsPerHour,
 		EnergyKWh:     n * r.rig.HeaterW * hotS / joulePerKWh,
 		Condenser:     condense(r.rig.HeaterW, r.rig.HeatShare, r.rules.CoolingFlowM3S, r.rules.CoolingRiseK),
 		Course:        r.course, Warnings: r.warnings,
 	}
-	if r.why == AtFloor {
+	if r.why == AtFloor && r.half != stripOnly {
 		o.Floor = r.dryness(&r.trapped)
 	}
 	o.CoolingWaterL = n * o.Condenser.RunM3PerS * (refluxS + stripS) * litrePerM3
 	r.share(&o, n, (refluxS+stripS)/secondsPerDay*r.rules.VapourLossPerDay)
+	o.Out.TempK = outK
 	o.account(r.m.Pure[inSolvent], r.rig.RoomK)
 	o.Balance.CarrierAddedKg, o.Balance.CarrierOutKg = r.plan.DoseKg+feed.CarrierKg, o.Out.CarrierKg
 	o.Balance.HeatInJ = n * r.netW() * hotS
@@ -53,17 +62,15 @@ func (r *refluxing) share(o *Outcome, n, vapourShare float64) {
 		regained = math.Min(lowest, o.In.WaterKg) - o.Out.WaterKg
 		o.Out.WaterKg += regained
 	}
-	o.Losses = []Loss{
-		{"dissolved in the aqueous layer", kg(r.s.aqueous, inSolvent)},
-		{"organic layer left in the receiver", kg(r.s.held, inSolvent)},
-		{"stripped off with the carrier", kg(r.s.drawn, inSolvent)},
-		{"vapour past the condenser", kg(vapour, inSolvent)},
+	if r.half != stripOnly {
+		o.Losses = append(o.Losses, Loss{"dissolved in the aqueous layer", kg(r.s.aqueous, inSolvent)}, Loss{"organic layer left in the receiver", kg(r.s.held, inSolvent)})
+		o.Discards = append(o.Discards, Discard{AqueousWaste, "aqueous layer", n * r.massKg(r.s.aqueous)}, Discard{SolventWaste, "organic layer left in the receiver", n * r.massKg(r.s.held)})
 	}
-	o.Discards = []Discard{
-		{AqueousWaste, "aqueous layer", n * r.massKg(r.s.aqueous)},
-		{SolventWaste, "organic layer left in the receiver", n * r.massKg(r.s.held)},
-		{SolventWaste, "carrier and solvent stripped off", n * r.massKg(r.s.drawn)},
+	if r.half != trapOnly {
+		o.Losses = append(o.Losses, Loss{strippedOff, kg(r.s.drawn, inSolvent)})
+		o.Discards = append(o.Discards, Discard{SolventWaste, "carrier and solvent stripped off", n * r.massKg(r.s.drawn)})
 	}
+	o.Losses = append(o.Losses, Loss{"vapour past the condenser", kg(vapour, inSolvent)})
 	var gone [3]float64
 	for i := range gone {
 		gone[i] = kg(r.s.aqueous, i) + kg(r.s.held, i) + kg(r.s.drawn, i) + kg(vapour, i)
@@ -72,6 +79,8 @@ func (r *refluxing) share(o *Outcome, n, vapourShare float64) {
 	o.Balance.CarrierRemovedKg = gone[inCarrier]
 	o.CarrierLostKg = gone[inCarrier]
 }
+
+const strippedOff = "stripped off with the carrier"
 
 func (r *refluxing) figures(o *Outcome, heatUpS, refluxS, stripS, drainings float64) {
 	a := r.eq.Azeotrope
@@ -90,23 +99,38 @@ func (r *refluxing) figures(o *Outcome, heatUpS, refluxS, stripS, drainings floa
 		{"water in the pot when the trap stops", "mg/kg", r.dryness(&r.trapped) * mgPerKg},
 		{"carrier left in the product", "mg/kg", o.Out.Carrier() * mgPerKg},
 		{"carrier in the aqueous layer", "kg", float64(r.rig.Charges) * r.kg(r.s.aqueous[inCarrier], inCarrier)},
-		{"stripped off, each charge", "L", r.liquidM3(r.s.drawn, r.rig.RoomK) * litrePerM3},
+		{"volume drawn off, each charge", "L", r.liquidM3(r.s.drawn, r.rig.RoomK) * litrePerM3},
+		{"equilibrium stages of the column", "", float64(r.plan.Stages)},
 		{"band on the water of the organic layer", "factor", math.Max(1, r.widestBand)},
 	}
 }
 
 func (r *refluxing) warn(o *Outcome) {
-	o.Warnings = append(o.Warnings, fmt.Sprintf("the product holds %s of %s", quantity.FormatWater(o.Out.Carrier()), r.m.Pure[inCarrier].Key))
-	if r.stripWhy == AtHeel {
-		o.Warnings = append(o.Warnings, fmt.Sprintf("stripping ends at the heel with %s of %s left, above the limit of %s",
-			quantity.FormatWater(o.Out.Carrier()), r.m.Pure[inCarrier].Key, quantity.FormatWater(r.plan.CarrierLimit)))
-	}
 	if r.widestBand > 1 {
 		o.Warnings = append(o.Warnings, fmt.Sprintf("water in the organic layer rests on %s: within a factor %.2g either way", r.bandBasis, r.widestBand))
 	}
-	if lost := o.Losses[2].SolventKg / o.In.SolventKg; lost > wastefulShare {
-		o.Warnings = append(o.Warnings, fmt.Sprintf("%.0f %% of the solvent is stripped off with the carrier", 100*lost))
+	if r.half == trapOnly {
+		return
 	}
+	o.Warnings = append(o.Warnings, fmt.Sprintf("the product holds %s of %s", quantity.FormatWater(o.Out.Carrier()), r.m.Pure[inCarrier].Key))
+	if r.stripWhy == AtHeel {
+		o.Warnings = append(o.Warnings, r.stripped())
+	}
+	for _, l := range o.Losses {
+		if share := l.SolventKg / o.In.SolventKg; l.Cause == strippedOff && share > wastefulShare {
+			o.Warnings = append(o.Warnings, fmt.Sprintf("%.0f %% of the solvent is stripped off with the carrier", 100*share))
+		}
+	}
+}
+
+// stripped says where the stripping ends.
+func (r *refluxing) stripped() string {
+	limit, key := quantity.FormatWater(r.plan.CarrierLimit), r.m.Pure[inCarrier].Key
+	if r.stripWhy == AtHeel {
+		left := r.kg(r.s.pot[inCarrier], inCarrier) / r.massKg(r.s.pot)
+		return fmt.Sprintf("stripping ends at the heel with %s of %s left, above the limit of %s", quantity.FormatWater(left), key, limit)
+	}
+	return fmt.Sprintf("no more than %s of %s is left", limit, key)
 }
 
 // reached words the reason for stopping.

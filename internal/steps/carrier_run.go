@@ -2,6 +2,7 @@ package steps
 
 import (
 	"fmt"
+	"math"
 
 	"parch/internal/thermo"
 )
@@ -12,19 +13,37 @@ const (
 	inCarrier = thermo.InCarrier
 )
 
+// half is how much of a carrier distillation is carried out.
+type half int
+
+const (
+	bothHalves half = iota
+	trapOnly
+	stripOnly
+)
+
 // RunCarrier boils a lot with a carrier under a trap, then strips the carrier.
 //
 //	pot:  dN_i/dn = -y_i + (1 - beta) x_i,org = -beta x_i,aq
 //
 // per mole n of vapour, which the receiver parts into organic layer (returned)
 // and a share beta of aqueous layer (kept). Before that the receiver fills: from
-// the pot with nothing returned, or with dry carrier which the first organic
-// layer pushes into the pot. Stripping is Rayleigh's dN_i/dn = -y_i.
+// the pot with nothing returned, or with dry carrier which the condensate pushes
+// into the pot. Stripping is Rayleigh's dN_i/dn = -y_i.
 func RunCarrier(eq *CarrierEquilibrium, feed Lot, plan CarrierPlan, rig TrapRig, rules TrapRules) (Outcome, error) {
+	return runCarrier(bothHalves, eq, feed, plan, rig, rules)
+}
+
+// RunCarrierTrap is the first half of RunCarrier. The pot stays hot, with its carrier.
+func RunCarrierTrap(eq *CarrierEquilibrium, feed Lot, plan CarrierPlan, rig TrapRig, rules TrapRules) (Outcome, error) {
+	return runCarrier(trapOnly, eq, feed, plan, rig, rules)
+}
+
+func runCarrier(half half, eq *CarrierEquilibrium, feed Lot, plan CarrierPlan, rig TrapRig, rules TrapRules) (Outcome, error) {
 	if err := plan.check(); err != nil {
 		return Outcome{}, err
 	}
-	r := refluxing{eq: eq, m: eq.Model, plan: plan, rig: rig, rules: rules}
+	r := refluxing{eq: eq, m: eq.Model, plan: plan, rig: rig, rules: rules, half: half}
 	if err := r.start(feed); err != nil {
 		return Outcome{}, err
 	}
@@ -34,6 +53,34 @@ func RunCarrier(eq *CarrierEquilibrium, feed Lot, plan CarrierPlan, rig TrapRig,
 	if err := r.reflux(); err != nil {
 		return Outcome{}, err
 	}
+	r.trapped = r.s
+	if half == bothHalves {
+		if err := r.strip(); err != nil {
+			return Outcome{}, err
+		}
+	}
+	return r.outcome(feed), nil
+}
+
+// StripCarrier is the second half of RunCarrier: it draws what a lot holds of a
+// carrier off without return, down to the carrier limit of the plan. Its set-up is
+// what it takes to turn the trap off. The dose, the goal and the layers of the plan
+// have no part in it.
+func StripCarrier(eq *CarrierEquilibrium, feed Lot, plan CarrierPlan, rig TrapRig, rules TrapRules) (Outcome, error) {
+	plan.DoseKg, plan.PreFilled = 0, false
+	if err := plan.checkStrip(); err != nil {
+		return Outcome{}, err
+	}
+	rules.ShortestRefluxS = 0
+	r := refluxing{eq: eq, m: eq.Model, plan: plan, rig: rig, rules: rules, half: stripOnly}
+	if err := r.start(feed); err != nil {
+		return Outcome{}, err
+	}
+	first, err := r.climb(&r.s)
+	if err != nil {
+		return Outcome{}, err
+	}
+	r.note(&first)
 	r.trapped = r.s
 	if err := r.strip(); err != nil {
 		return Outcome{}, err
@@ -48,6 +95,7 @@ type refluxing struct {
 	plan  CarrierPlan
 	rig   TrapRig
 	rules TrapRules
+	half  half
 
 	charge        Fractions // mol of the lot and the dose
 	startK        float64
@@ -132,7 +180,11 @@ func (r *refluxing) start(feed Lot) error {
 	if r.startK <= r.rig.RoomK {
 		return fmt.Errorf("%w: the pot boils at %.1f °C at %.4g kPa, not above the room's %.1f °C", ErrNoCarrier, r.startK-273.15, r.eq.PressurePa/1e3, r.rig.RoomK-273.15)
 	}
-	r.heatUpJ = r.sensible(r.s.pot, r.rig.RoomK, r.startK)
+	fromK := feed.TempK
+	if fromK == 0 {
+		fromK = r.rig.RoomK
+	}
+	r.heatUpJ = r.sensible(r.s.pot, math.Min(fromK, r.startK), r.startK)
 	return checkHeater(r.heatUpJ, r.netW(), r.rules.LongestHeatUpS, total(r.s.pot)*r.m.MolarVolume(scaled(r.s.pot, 1/total(r.s.pot)), r.rig.RoomK))
 }
 
