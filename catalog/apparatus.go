@@ -17,7 +17,7 @@ func (s *shelf) readApparatus() {
 }
 
 func (s *shelf) apparatus(key string, n *document.Node) *Apparatus {
-	f := n.Map("name", "kind", "returns", "set-up", "volume", "fill volume", "fill", "power", "load", "energy",
+	f := n.Map("name", "kind", "returns", "pre-filled", "set-up", "volume", "fill volume", "fill", "power", "load", "energy",
 		"diameter", "length", "stages", "cooling", "life", "breakage")
 	a := &Apparatus{
 		Key: key, Name: f.Need("name").Text(), Kind: f.Need("kind").OneOf(apparatusKinds...), Own: s.owning,
@@ -37,6 +37,9 @@ func (s *shelf) apparatus(key string, n *document.Node) *Apparatus {
 	}
 	if n := f.Get("returns"); n != nil {
 		a.Returns = n.OneOf("light", "heavy", "either")
+	}
+	if n := f.Get("pre-filled"); n != nil {
+		a.PreFilled = n.OneOf("yes", "no") == "yes"
 	}
 	for _, key := range needed[a.Kind] {
 		f.Need(key)

@@ -11,6 +11,9 @@ type Carrier struct {
 	Key    string
 	ByName bool   // only where the job accepts it by name
 	Reason string // why, or what to mind
+
+	NotWith       []string // classes of solvent that it reacts with
+	NotWithReason string
 	Origin
 }
 

@@ -17,9 +17,16 @@ func (s *shelf) readCarriers() {
 			if s.cat.Solvents[e.Key] == nil {
 				e.Node.Fail("%q is not a solvent known here%s", e.Key, e.Node.Offer(e.Key, keysOf(s.cat.Solvents)))
 			}
-			f := e.Node.Map(with("accept", "reason")...)
+			f := e.Node.Map(with("accept", "reason", "not with")...)
 			c := &Carrier{Key: e.Key, Reason: f.Need("reason").Text(), Origin: s.origin(f)}
 			c.ByName = f.Need("accept").OneOf("always", "by name") == "by name"
+			if n := f.Get("not with"); n != nil {
+				g := n.Map("classes", "reason")
+				for _, class := range g.Need("classes").Items() {
+					c.NotWith = append(c.NotWith, class.Text())
+				}
+				c.NotWithReason = g.Need("reason").Text()
+			}
 			s.cat.Carriers[e.Key] = c
 		}
 	})

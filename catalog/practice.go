@@ -53,6 +53,7 @@ var practiceKeys = map[string]quantity.Dimension{
 	"forerun-reflux":        quantity.Number,
 	"forerun-column":        quantity.Time,
 	"forerun-heel":          quantity.Share,
+	"carrier-limit":         quantity.WaterContent,
 	"forerun-discard":       quantity.Share,
 	"salt-attended":         quantity.Time,
 	"salt-contact":          quantity.Time,

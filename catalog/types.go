@@ -204,6 +204,7 @@ type Apparatus struct {
 	Key, Name, Kind string // Kind: one of apparatusKinds
 	Own             bool   // from the user's own file
 	Returns         string // receivers: "light", "heavy" or "either"
+	PreFilled       bool   // receivers: filled with dry carrier before it starts
 	SetUp           *Value // s, beyond the usual set-up of a trap
 	Volume          *Value // m3: flask, vessel or receiver (usable for water)
 	FillVolume      *Value // m3: receiver, liquid held before anything returns

@@ -45,6 +45,10 @@ func FootprintOf(cat *catalog.Catalog, solvent *catalog.Solvent, roomK float64, 
 			f.BurningKg += use.Quantity * kgPerLitre * factor("burning/"+solvent.Key)
 		case use.Head == steps.Purchase:
 			f.MakingKg += use.Quantity * kgPerLitre * factor("making/"+solvent.Key)
+		case use.Head == steps.Agent && use.Unit == "litre": // a carrier
+			kg := use.Quantity / 1e3 * cat.Solvents[use.Item].Pure.DensityKgPerM3.At(roomK)
+			f.MakingKg += kg * factor("making/"+use.Item)
+			f.BurningKg += kg * factor("burning/"+use.Item)
 		case use.Head == steps.Agent:
 			f.AgentKg += use.Quantity * factor("making/"+use.Item)
 		case use.Head == steps.Waste && use.Unit == "kg":

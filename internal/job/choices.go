@@ -79,21 +79,11 @@ func (r *reader) storedItems() []string {
 
 func (r *reader) accept(n *document.Node) {
 	f := n.Map("carriers", "agents", "unsuitable")
-	solvents := slices.Sorted(maps.Keys(r.cat.Solvents))
 	r.job.Accept = Accept{
-		Carriers:   r.words(f.Get("carriers"), slices.Concat(carriers, solvents), "a carrier"),
+		Carriers:   r.words(f.Get("carriers"), slices.Sorted(maps.Keys(r.cat.Carriers)), "a carrier"),
 		Agents:     r.words(f.Get("agents"), r.agentKeys(), "a drying agent"),
 		Unsuitable: r.words(f.Get("unsuitable"), r.agentKeys(), "a drying agent"),
 	}
-	if f.Has("carriers") {
-		r.notYet(f.Get("carriers"))
-	}
-}
-
-// carriers may be named although the catalog may not hold them as solvents yet.
-var carriers = []string{
-	"toluene", "cyclohexane", "n-heptane", "benzene", "mtbe", "diisopropyl-ether", "ethyl-acetate", "n-butyl-acetate",
-	"chloroform", "dichloromethane", "carbon-tetrachloride", "1-2-dichloroethane",
 }
 
 func (r *reader) exclude(n *document.Node) {

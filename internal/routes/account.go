@@ -28,13 +28,16 @@ func (c *Case) account(place int, o steps.Outcome, choice choice) []StageUse {
 		use(steps.SolventLost, c.Solvent.Key, "litre", l.SolventKg/density*1e3, l.Cause)
 	}
 	for _, d := range o.Discards {
-		use(steps.Waste, c.WasteItem(d.Class), "kg", d.Kg, d.What)
+		use(steps.Waste, c.wasteItemWith(d.Class, o.Carrier), "kg", d.Kg, d.What)
 	}
 	switch o.Kind {
 	case steps.Trap:
 		still, _ := c.Still()
 		uses = append(uses, c.wear(place, still, 1)...)
 		uses = append(uses, c.wear(place, c.Catalog.Apparatus[o.Apparatus], 1)...)
+		if o.Carrier != "" {
+			use(steps.Agent, o.Carrier, "litre", o.CarrierKg/c.carrierDensity(o.Carrier)*1e3, "carrier charged; what is stripped off is mixed with solvent and not used again")
+		}
 	case steps.Forerun:
 		still, _ := c.Still()
 		uses = append(uses, c.wear(place, still, 1)...)
@@ -142,6 +145,14 @@ func (c *Case) wear(place int, a *catalog.Apparatus, count int) []StageUse {
 	}}}
 }
 
+// wasteItemWith is wasteItem where a carrier goes with the solvent.
+func (c *Case) wasteItemWith(class steps.WasteClass, carrier string) string {
+	if class == steps.SolventWaste && carrier != "" && c.Catalog.Solvents[carrier].Hazards.Halogenated {
+		return "waste-halogenated-liquid"
+	}
+	return c.WasteItem(class)
+}
+
 // WasteItem is the price item for a class of waste of the lot.
 func (c *Case) WasteItem(class steps.WasteClass) string {
 	switch class {
@@ -185,7 +196,7 @@ func (c *Case) wholeRoute(run *Run) []StageUse {
 func (c *Case) tests(r Route) float64 {
 	n := 1.0
 	for _, s := range r[:len(r)-1] {
-		if chosenOutlet(s.Kind) {
+		if chosenOutlet(s.Kind) && s.Carrier == "" {
 			n++
 		}
 	}
@@ -214,6 +225,8 @@ func (c *Case) emissions(run *Run) float64 {
 			total += u.Quantity / 1e3 * density * factor("making/"+c.Solvent.Key)
 		case u.Head == steps.Waste && u.Basis == discardedLot:
 			total += u.Quantity * factor("burning/"+c.Solvent.Key)
+		case u.Head == steps.Agent && u.Unit == "litre": // a carrier
+			total += u.Quantity / 1e3 * c.carrierDensity(u.Item) * (factor("making/"+u.Item) + factor("burning/"+u.Item))
 		case u.Head == steps.Agent:
 			total += u.Quantity * factor("making/"+u.Item)
 		}

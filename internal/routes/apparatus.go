@@ -40,7 +40,11 @@ func (c *Case) owned(item string) bool {
 // receivers that return the layer of a trap, the owned ones first; ones made for
 // that layer go before those for either.
 func (c *Case) receivers(trap *steps.TrapEquilibrium) (all []*catalog.Apparatus) {
-	want := string(trap.Floor.Return)
+	return c.receiversFor(string(trap.Floor.Return))
+}
+
+// receiversFor a layer that goes back: light or heavy.
+func (c *Case) receiversFor(want string) (all []*catalog.Apparatus) {
 	for _, a := range c.pieces("receiver") {
 		if a.Returns == want || a.Returns == "either" {
 			all = append(all, a)

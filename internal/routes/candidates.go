@@ -38,6 +38,9 @@ func (c *Case) Candidates() ([]Route, []Excluded) {
 func (c *Case) chains() []Route {
 	forerun := Stage{Kind: steps.Forerun}
 	bulk := []Route{nil, {{Kind: steps.Trap}}, {forerun}, {{Kind: steps.Trap}, forerun}}
+	for _, key := range c.carriers() {
+		bulk = append(bulk, withCarrier(key))
+	}
 	for _, salt := range c.agents("salt") {
 		bulk = append(bulk, Route{{Kind: steps.Salt, Agent: salt}})
 	}
@@ -102,6 +105,9 @@ func (c *Case) refuseStage(s Stage, last bool) (reason, source string) {
 	}
 	switch s.Kind {
 	case steps.Trap:
+		if s.Carrier != "" {
+			return c.refuseCarrier(s.Carrier)
+		}
 		return c.refuseTrap()
 	case steps.Forerun:
 		return c.refuseHeating()
@@ -232,8 +238,14 @@ func (c *Case) Label(r Route, settings Settings) string {
 			parts[i] = "settle"
 		case steps.Trap:
 			parts[i] = "boil out under a trap"
+			if s.Carrier != "" {
+				parts[i] = "boil out with " + c.Catalog.Solvents[s.Carrier].Name + " under a trap"
+			}
 		case steps.Forerun:
 			parts[i] = "draw off a forerun"
+			if r.Strips(i) {
+				parts[i] = "draw off the carrier"
+			}
 		case steps.Salt:
 			parts[i] = "stir with " + c.Catalog.Agents[s.Agent].Name
 		case steps.Soak:

@@ -63,8 +63,14 @@ func (c *Case) step(stage Stage, lot steps.Lot, goal float64, last bool, choice 
 	case steps.Settle:
 		return steps.RunSettle(c.Mixture, lot, c.Job.Site.RoomK, c.settleRules())
 	case steps.Trap:
+		if stage.Carrier != "" {
+			return c.boilWithCarrier(stage.Carrier, lot, goal, choice)
+		}
 		return c.boilOut(lot, goal, choice)
 	case steps.Forerun:
+		if choice.carrier != "" {
+			return c.stripCarrier(choice.carrier, lot, choice)
+		}
 		return c.runForerun(lot, goal, choice)
 	case steps.Salt:
 		return c.runSalt(lot, goal, stage.Agent, last)
@@ -90,7 +96,7 @@ func (r refusal) Unwrap() error { return r.error }
 // refused marks the errors that say that a step does not work on this lot.
 func refused(err error) error {
 	for _, known := range []error{steps.ErrNoTrap, steps.ErrNothingSettles, steps.ErrWetSieve, steps.ErrUnfit, steps.ErrNoSense,
-		steps.ErrNoForerun, steps.ErrNoColumn, steps.ErrSaltTooWarm, steps.ErrPreDry, steps.ErrHeater} {
+		steps.ErrNoForerun, steps.ErrNoColumn, steps.ErrSaltTooWarm, steps.ErrPreDry, steps.ErrHeater, steps.ErrNoCarrier} {
 		if errors.Is(err, known) {
 			return refusal{err}
 		}
@@ -102,7 +108,7 @@ func refused(err error) error {
 // reached one of a step that has none.
 func (c *Case) keptHandOver(r Route, s Settings, reached []float64) []float64 {
 	for i := range reached {
-		if chosenOutlet(r[i].Kind) {
+		if chosenOutlet(r[i].Kind) && !r.Strips(i) {
 			reached[i] = s.HandOverMgPerKg[i]
 		}
 	}
@@ -174,6 +180,7 @@ func (c *Case) trapRules() steps.TrapRules {
 type stepKey struct {
 	stage                           Stage
 	waterKg, solventKg, tempK, goal float64
+	carrierKg                       float64
 	last                            bool
 	choice                          choice
 }
@@ -185,7 +192,10 @@ func (c *Case) remembered(stage Stage, lot steps.Lot, goal float64, last bool, c
 	if stage.Kind == steps.Soak {
 		return c.step(stage, lot, goal, last, choice)
 	}
-	key := stepKey{stage, lot.WaterKg, lot.SolventKg, lot.TempK, goal, last, choice}
+	if choice.carrier != "" {
+		goal, last = 0, false // a carrier is stripped to its limit, whatever follows
+	}
+	key := stepKey{stage, lot.WaterKg, lot.SolventKg, lot.TempK, goal, lot.CarrierKg, last, choice}
 	if known, ok := c.known[key]; ok {
 		return known.outcome, known.err
 	}

@@ -14,20 +14,25 @@ import (
 
 // Stage is one step of a route.
 type Stage struct {
-	Kind  steps.Kind
-	Agent string
+	Kind    steps.Kind
+	Agent   string
+	Carrier string // of a trap
 }
 
 // Route is a chain of stages.
 type Route []Stage
 
-// ID joins the stages with "+", an agent after a colon: "trap+soak:sieve-3a".
+// ID joins the stages with "+", an agent or a carrier after a colon:
+// "trap:toluene+forerun+soak:sieve-3a".
 func (r Route) ID() string {
 	parts := make([]string, len(r))
 	for i, s := range r {
 		parts[i] = string(s.Kind)
 		if s.Agent != "" {
 			parts[i] += ":" + s.Agent
+		}
+		if s.Carrier != "" {
+			parts[i] += ":" + s.Carrier
 		}
 	}
 	return strings.Join(parts, "+")
@@ -47,6 +52,9 @@ func (r Route) count(kinds ...steps.Kind) int {
 // leastAim is the driest that a step is sized for, mg/kg.
 const leastAim = 1e-3
 
+// mostDose of a carrier, kg per kg of solvent.
+const mostDose = 10
+
 // longestSoakHours is a year.
 const longestSoakHours = 366 * 24
 
@@ -60,6 +68,8 @@ type choice struct {
 	after     string  // what is done with the sieve
 	receiver  string  // of a trap; "": the first that fits
 	receiverC float64 // 0: the coldest in reach
+	dose      float64 // of a carrier, kg per kg of solvent
+	carrier   string  // that the trap before has left in the pot
 }
 
 // at returns the choices of stage i.
@@ -67,6 +77,13 @@ func (s Settings) at(r Route, i int) (c choice) {
 	if r[i].Kind == steps.Forerun {
 		c.stages = s.Stages[r[:i].count(steps.Forerun)]
 		c.hot = i > 0 && r[i-1].Kind == steps.Trap
+	}
+	if r[i].Carrier != "" {
+		c.dose = s.CarrierDose[r.carriersBefore(i)]
+		c.stages = s.Stages[r[:i].count(steps.Forerun)] // the column that strips the carrier stands there from the start
+	}
+	if r.Strips(i) {
+		c.carrier = r[i-1].Carrier
 	}
 	c.goesOn = r[i].Kind == steps.Trap && i+1 < len(r) && r[i+1].Kind == steps.Forerun
 	if k := r[:i].count(steps.Trap); r[i].Kind == steps.Trap {
@@ -87,6 +104,16 @@ func (s Settings) at(r Route, i int) (c choice) {
 	return c
 }
 
+// carriersBefore counts the traps with a carrier before stage i.
+func (r Route) carriersBefore(i int) (n int) {
+	for _, s := range r[:i] {
+		if s.Carrier != "" {
+			n++
+		}
+	}
+	return n
+}
+
 // Settings are the free choices of a route. Doses follow from them.
 type Settings struct {
 	HandOverMgPerKg []float64 `json:"hand_over_mg_per_kg"`     // water after each stage but the last
@@ -96,6 +123,7 @@ type Settings struct {
 	Sieve           []string  `json:"sieve,omitempty"`         // "regenerate" or "discard", one for each soak or column
 	Receiver        []string  `json:"receiver,omitempty"`      // of each trap: key of the apparatus
 	ReceiverC       []float64 `json:"receiver_c,omitempty"`    // of each trap: temperature, °C
+	CarrierDose     []float64 `json:"carrier_dose,omitempty"`  // of each trap with a carrier: kg per kg of solvent
 	AimMgPerKg      float64   `json:"aim_mg_per_kg,omitempty"` // the last step is sized for it; 0: for the acceptance limit
 
 	// Packs that set the prices of the route, by item, where there are several:
@@ -124,6 +152,14 @@ func (s Settings) Fit(r Route) error {
 	}
 	if s.AimMgPerKg != 0 && !(s.AimMgPerKg >= leastAim && s.AimMgPerKg < 1e6) {
 		return fmt.Errorf("%s: %w: an aim of %g mg/kg; %g to 1000000 are allowed, or 0 for the acceptance limit", r.ID(), ErrSettings, s.AimMgPerKg, leastAim)
+	}
+	if n := r.carriersBefore(len(r)); len(s.CarrierDose) != n {
+		return fmt.Errorf("%s: %w: %d doses for %d carriers", r.ID(), ErrSettings, len(s.CarrierDose), n)
+	}
+	for _, d := range s.CarrierDose {
+		if !(d > 0 && d <= mostDose) {
+			return fmt.Errorf("%s: %w: a carrier dose of %g kg/kg; above 0 to %d kg/kg are allowed", r.ID(), ErrSettings, d, mostDose)
+		}
 	}
 	for _, h := range s.SoakHours {
 		if !(h > 0 && h <= longestSoakHours) {

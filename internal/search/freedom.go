@@ -44,6 +44,9 @@ func blank(r routes.Route) routes.Settings {
 			s.Stages = append(s.Stages, 0)
 		case steps.Trap:
 			s.Receiver, s.ReceiverC = append(s.Receiver, ""), append(s.ReceiverC, 0)
+			if stage.Carrier != "" {
+				s.CarrierDose = append(s.CarrierDose, routes.CarrierDoses[0])
+			}
 		}
 	}
 	return s
@@ -52,6 +55,7 @@ func blank(r routes.Route) routes.Settings {
 func cloned(s routes.Settings) routes.Settings {
 	s.HandOverMgPerKg, s.SoakHours, s.Stages = slices.Clone(s.HandOverMgPerKg), slices.Clone(s.SoakHours), slices.Clone(s.Stages)
 	s.Stirred, s.Sieve, s.Receiver, s.ReceiverC = slices.Clone(s.Stirred), slices.Clone(s.Sieve), slices.Clone(s.Receiver), slices.Clone(s.ReceiverC)
+	s.CarrierDose = slices.Clone(s.CarrierDose)
 	return s
 }
 
@@ -59,12 +63,18 @@ func cloned(s routes.Settings) routes.Settings {
 // they depend on the time that is left.
 func (t *Tuner) axes(r routes.Route, stands []stand) (all []axis) {
 	count := map[steps.Kind]int{}
-	beds := 0
+	beds, carriers := 0, 0
 	for _, stage := range r {
 		k := count[stage.Kind]
 		count[stage.Kind]++
 		switch stage.Kind {
 		case steps.Trap:
+			if stage.Carrier != "" { // the receiver that fits, as cold as can be: each run takes its time
+				dose := carriers
+				carriers++
+				all = append(all, oneOf(routes.CarrierDoses, func(s *routes.Settings, d float64) { s.CarrierDose[dose] = d }))
+				continue
+			}
 			all = append(all, later(oneOf(t.receivers(), func(s *routes.Settings, key string) { s.Receiver[k] = key })))
 			all = append(all, later(oneOf(t.Case.ReceiverTemperatures(), func(s *routes.Settings, c float64) { s.ReceiverC[k] = c })))
 		case steps.Forerun:
@@ -115,7 +125,7 @@ func (t *Tuner) afterUse() []string {
 func places(r routes.Route) (all []int) {
 	for i := range len(r) - 1 {
 		switch {
-		case r[i].Kind == steps.Trap && r[i+1].Kind == steps.Forerun:
+		case r[i].Kind == steps.Trap && r[i+1].Kind == steps.Forerun, r.Strips(i):
 		case r[i].Kind == steps.Trap, r[i].Kind == steps.Forerun, r[i].Kind == steps.Soak, r[i].Kind == steps.Column:
 			all = append(all, i)
 		}

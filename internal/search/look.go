@@ -259,6 +259,7 @@ func (g *tuning) nearest(warm routes.Settings) spot {
 	copy(shape.Sieve, warm.Sieve)
 	copy(shape.Receiver, warm.Receiver)
 	copy(shape.ReceiverC, warm.ReceiverC)
+	copy(shape.CarrierDose, warm.CarrierDose)
 	for i, a := range g.axes {
 		for v := range a.count {
 			probe := cloned(shape)

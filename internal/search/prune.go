@@ -10,8 +10,9 @@ import (
 
 // Prune drops chains that begin with a salt where another salt leaves no more
 // water for no more money, time and waste: nothing that follows
-// could make up for it. It returns the routes kept and what was dropped.
+// could make up for it, and the carriers beyond the best few. It returns the routes kept and what was dropped.
 func (t *Tuner) Prune(all []routes.Route) (kept []routes.Route, dropped []routes.Excluded) {
+	all, dropped = t.fewCarriers(all)
 	worse := t.dominatedSalts(all)
 	told := map[string]bool{}
 	for _, r := range all {

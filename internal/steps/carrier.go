@@ -97,6 +97,16 @@ func NewCarrierEquilibrium(model *thermo.Ternary, organic *thermo.OrganicLayer, 
 	return eq, nil
 }
 
+// Returns is the layer of the azeotrope's condensate that goes back to the pot, or
+// None where it does not split or settle.
+func (eq *CarrierEquilibrium) Returns() thermo.Returns {
+	split, err := eq.Model.Flash(eq.Azeotrope.Y, eq.ReceiverK)
+	if err != nil {
+		return thermo.None
+	}
+	return eq.Model.Settle(split, eq.ReceiverK).Return
+}
+
 // volatility is gamma Psat/P of a trace of carrier in the boiling dry solvent.
 func (eq *CarrierEquilibrium) volatility() float64 {
 	ln := eq.Model.LnGamma(thermo.Fractions{0, 1, 0}, eq.DryK)

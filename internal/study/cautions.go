@@ -60,7 +60,7 @@ func applies(c catalog.Caution, k *routes.Case, r routes.Route) bool {
 		return false
 	}
 	return anyStep(r, func(s routes.Stage) bool {
-		return (len(c.Steps) == 0 || slices.Contains(c.Steps, string(s.Kind))) &&
+		return (len(c.Steps) == 0 || slices.Contains(c.Steps, string(s.Kind)) || s.Carrier != "" && slices.Contains(c.Steps, "carrier")) &&
 			(len(c.Agents) == 0 || slices.Contains(c.Agents, s.Agent))
 	})
 }

@@ -48,6 +48,7 @@ func gather(r *Report, c *catalog.Catalog) *shelf {
 				if s.Agent != "" {
 					p.agent(c.Agents[s.Agent])
 				}
+				p.carrier(l.Solvent.Key, s.Carrier)
 			}
 		}
 		p.history(l.Job.SieveHistory)
@@ -74,7 +75,7 @@ func gather(r *Report, c *catalog.Catalog) *shelf {
 func appliesTo(key string, kinds map[steps.Kind]bool) bool {
 	owners := map[string]steps.Kind{
 		"trap-": steps.Trap, "heat-": steps.Trap, "draining-": steps.Trap, "cooling-": steps.Trap, "vapour-": steps.Trap,
-		"settle-": steps.Settle, "soak-": steps.Soak, "oven-": steps.Soak, "dose-": steps.Soak, "buy-": steps.Buy,
+		"forerun-": steps.Forerun, "carrier-": steps.Forerun, "settle-": steps.Settle, "soak-": steps.Soak, "oven-": steps.Soak, "dose-": steps.Soak, "buy-": steps.Buy,
 	}
 	for prefix, kind := range owners {
 		if strings.HasPrefix(key, prefix) {
@@ -92,6 +93,24 @@ type shelf struct {
 	cited   map[string]bool
 	weak    map[string]Weak
 	every   map[string]Weak // number, weak or not
+}
+
+// carrier cites what a carrier of the solvent rests on.
+func (p *shelf) carrier(solvent, key string) {
+	if key == "" {
+		return
+	}
+	pair := [2]string{solvent, key}
+	p.solvent(p.catalog.Solvents[key])
+	if set := p.catalog.Pairs[pair]; set != nil {
+		p.cite(set.Source)
+	}
+	if set := p.catalog.Ternaries[pair]; set != nil {
+		p.cite(set.Source)
+	}
+	if layer := p.catalog.Layers[pair]; layer != nil {
+		p.cite(layer.Source)
+	}
 }
 
 func (p *shelf) cite(id string) {
