@@ -86,7 +86,7 @@ func TestProblemsAreFound(t *testing.T) {
 		{"price per the wrong unit", "prices.yaml", "50 EUR/hour", "50 EUR/day", 0, `items.technician.price: "50 EUR/day" is not per hour; write it like "50 EUR/hour"`},
 		{"price of nothing known", "prices.yaml", "  sieve-3a:", "  sieve-3b:", 0, `items.sieve-3b: "sieve-3b" is nothing that is priced here; did you mean `},
 		{"kind unknown", "agents.yaml", "name: sodium metal\n  kind: reactive", "name: sodium metal\n  kind: metal", 1, `sodium.kind: "metal" is not allowed here; allowed: sieve, salt, reactive, oxide`},
-		{"caution of an unknown step", "cautions.yaml", "steps: [salt]", "steps: [salting]", 0, `[10].steps[0]: "salting" is not known here; did you mean "salt"?`},
+		{"caution of an unknown step", "cautions.yaml", "steps: [salt]", "steps: [salting]", 0, `[11].steps[0]: "salting" is not known here; did you mean "salt"?`},
 		{"anchor", "catalog.yaml", "date: 2026-12-01", "date: &a 2026-12-01", 0, `date: anchors (&name) are not used here; write the value out where it is needed`},
 	} {
 		t.Run(c.name, func(t *testing.T) {

@@ -31,7 +31,8 @@ func shelf() *catalog.Catalog {
 			"ethyl-acetate":   {Key: "ethyl-acetate", Name: "ethyl acetate", Class: "ester"},
 			"tetrahydrofuran": {Key: "tetrahydrofuran", Name: "tetrahydrofuran", Class: "ether", Aliases: []string{"THF"}, Hazards: catalog.Hazards{PeroxideClass: "B"}},
 		},
-		Agents: map[string]*catalog.Agent{"sieve-3a": {Key: "sieve-3a"}, "sieve-4a": {Key: "sieve-4a"}},
+		Carriers: map[string]*catalog.Carrier{"benzene": {Key: "benzene", ByName: true}},
+		Agents:   map[string]*catalog.Agent{"sieve-3a": {Key: "sieve-3a"}, "sieve-4a": {Key: "sieve-4a"}},
 		Matrix: map[[2]string]catalog.Verdict{
 			{"halogenated", "sodium"}: {Word: "dangerous", Reason: "can explode"},
 			{"aromatic", "sodium"}:    {Word: "caution"},

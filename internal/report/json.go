@@ -269,6 +269,7 @@ func showStep(o *steps.Outcome) stepOut {
 	return stepOut{
 		Kind:          o.Kind,
 		Agent:         known(o.Agent),
+		Carrier:       known(o.Carrier),
 		WaterIn:       number(o.In.Water() * mgPerKg),
 		WaterOut:      number(o.Out.Water() * mgPerKg),
 		Floor:         number(o.Floor * mgPerKg),

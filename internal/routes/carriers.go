@@ -13,9 +13,10 @@ import (
 )
 
 // carriers are the solvents that could carry water out of this one: those with an
-// activity model, sorted. A lot that a plain trap dries needs none.
+// activity model, sorted. A lot that a plain trap dries needs none, and one that may
+// not be heated has none: the plain trap tells why.
 func (c *Case) carriers() (keys []string) {
-	if c.Trap != nil {
+	if reason, _ := c.refuseHeating(); c.Trap != nil || reason != "" {
 		return nil
 	}
 	for pair := range c.Catalog.Pairs {
@@ -92,15 +93,17 @@ type carrierEquilibrium struct {
 
 // carrierAt is the equilibrium of a carrier with the receiver as cold as the site has it.
 func (c *Case) carrierAt(key string) (*steps.CarrierEquilibrium, error) {
-	known, ok := c.carriersAt[key]
-	if !ok {
-		known.eq, known.err = c.newCarrier(key)
-		if known.err == nil {
-			known.returns = known.eq.Returns()
-		}
-		c.carriersAt[key] = known
-	}
+	known := c.carrierKnown(key)
 	return known.eq, known.err
+}
+
+func (c *Case) carrierKnown(key string) carrierEquilibrium {
+	return c.site.carrier(key, func() (k carrierEquilibrium) {
+		if k.eq, k.err = c.newCarrier(key); k.err == nil {
+			k.returns = k.eq.Returns()
+		}
+		return k
+	})
 }
 
 func (c *Case) newCarrier(key string) (*steps.CarrierEquilibrium, error) {
@@ -123,7 +126,7 @@ func (c *Case) newCarrier(key string) (*steps.CarrierEquilibrium, error) {
 // carrierReceiver is the first receiver, owned ones before others, that returns the
 // layer of the carrier's azeotrope.
 func (c *Case) carrierReceiver(key string) (*catalog.Apparatus, error) {
-	want := string(c.carriersAt[key].returns)
+	want := string(c.carrierKnown(key).returns)
 	all := c.receiversFor(want)
 	if len(all) == 0 {
 		return nil, fmt.Errorf("%w: no receiver returns the %s layer", steps.ErrNoCarrier, want)

@@ -104,6 +104,10 @@ func settingsOf(r routes.Route) routes.Settings {
 			s.Sieve = append(s.Sieve, routes.Discard)
 		case steps.Forerun:
 			s.Stages = append(s.Stages, 6)
+		case steps.Trap:
+			if stage.Carrier != "" {
+				s.CarrierDose = append(s.CarrierDose, 0.25)
+			}
 		}
 	}
 	return s

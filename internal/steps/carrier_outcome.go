@@ -83,6 +83,19 @@ func (r *refluxing) share(o *Outcome, n, vapourShare float64) {
 const strippedOff = "stripped off with the carrier"
 
 func (r *refluxing) figures(o *Outcome, heatUpS, refluxS, stripS, drainings float64) {
+	if r.half == stripOnly {
+		o.Figures = []Figure{
+			{"still charges", "", float64(r.rig.Charges)},
+			{"equilibrium stages of the column", "", float64(r.plan.Stages)},
+			{"boiling temperature at the start", "°C", r.startK - 273.15},
+			{"boiling temperature at the end", "°C", r.near[0].TempK - 273.15},
+			{"heat-up, each charge", "h", heatUpS / secondsPerHour},
+			{"drawing off, each charge", "h", stripS / secondsPerHour},
+			{"volume drawn off, each charge", "L", r.liquidM3(r.s.drawn, r.rig.RoomK) * litrePerM3},
+			{"carrier left in the product", "mg/kg", o.Out.Carrier() * mgPerKg},
+		}
+		return
+	}
 	a := r.eq.Azeotrope
 	o.Figures = []Figure{
 		{"still charges", "", float64(r.rig.Charges)},

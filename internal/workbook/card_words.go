@@ -106,10 +106,20 @@ func (l *layout) chargeWords(r *routeModel, o *steps.Outcome, sieve string) stri
 		return fmt.Sprintf("%s of dry grade, sealed.", quantity.FormatVolume(lot.BatchM3))
 	}
 	charges := o.Figure("still charges")
+	if o.CarrierKg > 0 {
+		return fmt.Sprintf("%s of %s to %s, in %s.", quantity.FormatMass(o.CarrierKg), l.agentName(o.Carrier), litres(o.In), counted(charges, "charge"))
+	}
 	if charges > 1 {
 		return fmt.Sprintf("%s in %s charges.", litres(o.In), significant(charges))
 	}
 	return litres(o.In) + " in one charge."
+}
+
+func counted(n float64, what string) string {
+	if n == 1 {
+		return "one " + what
+	}
+	return significant(n) + " " + what + "s"
 }
 
 func litres(lot steps.Lot) string { return quantity.FormatMass(lot.MassKg()) + " of the lot" }

@@ -83,7 +83,7 @@ func (l *layout) stepBlock(g *grid, all []stepModel) {
 			return cell{look: formula, formula: f[1:], unit: unit, format: format}
 		}
 		for c, x := range []cell{
-			text(plain, string(s.Kind)), text(words, s.Agent),
+			text(plain, string(s.Kind)), text(words, s.Agent+s.Carrier),
 			from("mg/kg", in, "win"), from("mg/kg", out, "wout"), finite(s.Floor*mgPerKg, "mg/kg", decimals(2)),
 			from("h", decimals(2), "hours"), from("h", decimals(2), "attended", "besides"), from("kWh", decimals(2), "energy", "ovenkwh"),
 			from("L", decimals(1), "cooling"), from("kg", decimals(3), "agent"), from("L", decimals(3), "loss1", "loss2", "loss3"),
