@@ -12,7 +12,6 @@ type equilibria struct {
 	lock       sync.Mutex
 	traps      map[float64]*steps.TrapEquilibrium // by receiver temperature, K
 	carriers   map[string]carrierEquilibrium      // by carrier
-	carriers   map[string]carrierEquilibrium      // by carrier
 	forerun    *steps.ForerunEquilibrium
 	forerunErr error
 	saturated  *solubility
@@ -47,17 +46,6 @@ func (e *equilibria) trap(tK float64, find func() (*steps.TrapEquilibrium, error
 		e.traps[tK] = trap
 	}
 	return trap, err
-}
-
-func (e *equilibria) carrier(key string, find func() carrierEquilibrium) carrierEquilibrium {
-	e.lock.Lock()
-	defer e.lock.Unlock()
-	known, ok := e.carriers[key]
-	if !ok {
-		known = find()
-		e.carriers[key] = known
-	}
-	return known
 }
 
 func (e *equilibria) carrier(key string, find func() carrierEquilibrium) carrierEquilibrium {

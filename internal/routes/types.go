@@ -80,7 +80,9 @@ func (s Settings) at(r Route, i int) (c choice) {
 	}
 	if r[i].Carrier != "" {
 		c.dose = s.CarrierDose[r.carriersBefore(i)]
-		c.stages = s.Stages[r[:i].count(steps.Forerun)] // the column that strips the carrier stands there from the start
+		if k := r[:i].count(steps.Forerun); k < len(s.Stages) {
+			c.stages = s.Stages[k] // the column that strips the carrier stands there from the start
+		}
 	}
 	if r.Strips(i) {
 		c.carrier = r[i-1].Carrier

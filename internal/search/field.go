@@ -79,7 +79,7 @@ type ticket struct {
 // its litres only shrink. +Inf where those steps refuse the lot.
 func (t *Tuner) LeastCost(r routes.Route) float64 {
 	head := r[:len(r)-1]
-	if len(head) == 0 || has(head, steps.Soak) || has(head, steps.Column) {
+	if len(head) == 0 || has(head, steps.Soak) || has(head, steps.Column) || r.CarrierOf() != "" {
 		return 0
 	}
 	s := blank(head)

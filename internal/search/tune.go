@@ -99,7 +99,11 @@ func (t *Tuner) TuneFrom(r routes.Route, warm *routes.Settings) (routes.Run, err
 	if err != nil {
 		return routes.Run{}, err
 	}
-	if warm = g.worthIt(warm); warm != nil {
+	warm = g.worthIt(warm)
+	switch {
+	case warm != nil && r.CarrierOf() != "": // keeps its dose and its column: each run takes its time
+		g.try(g.nearest(*warm))
+	case warm != nil:
 		g.around(g.nearest(*warm))
 	}
 	if warm == nil || g.best.score >= scoreMissed {
@@ -119,7 +123,7 @@ func (t *Tuner) TuneFrom(r routes.Route, warm *routes.Settings) (routes.Run, err
 
 // worthIt drops a start where everything is tried out anyway.
 func (g *tuning) worthIt(warm *routes.Settings) *routes.Settings {
-	if len(g.places) == 0 && g.combinations() <= mostProduct && !g.hasLate() {
+	if g.route.CarrierOf() == "" && len(g.places) == 0 && g.combinations() <= mostProduct && !g.hasLate() {
 		return nil
 	}
 	return warm

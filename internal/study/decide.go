@@ -84,6 +84,9 @@ func (q *question) tuner(k *routes.Case, book costs.Book) *search.Tuner {
 func (q *question) field(t *search.Tuner, pass func(routes.Route) bool) search.Field {
 	f := search.Field{Tuner: t, Warm: q.warm}
 	for _, r := range q.offered {
+		if r.CarrierOf() != "" && (len(q.lot.Routes) == 0 || q.lot.Routes[0].ID != r.ID()) {
+			continue // a carrier that does not lead costs more time here than it tells
+		}
 		if pass == nil || pass(r) {
 			f.Routes = append(f.Routes, r)
 		}

@@ -99,6 +99,9 @@ func bestOf(k *routes.Case, like *search.Tuner, by search.Objective) (*routes.Ru
 	var best *routes.Run
 	lowest := math.Inf(1)
 	for _, r := range offered {
+		if r.CarrierOf() != "" { // each takes as long as all others together
+			continue
+		}
 		run, err := t.Tune(r)
 		if _, refused := refusal(err); refused {
 			continue
