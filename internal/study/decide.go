@@ -64,7 +64,7 @@ func newQuestion(r *Report, l *Lot, c *catalog.Catalog) (*question, error) {
 	}
 	q := &question{lot: l, job: r.Job, k: k, book: r.Book, site: costs.NewArrangement(c, r.Job), warm: map[string]routes.Settings{}, now: map[string]float64{}}
 	offered, _ := k.Candidates()
-	for _, route := range offered {
+	for _, route := range q.quick(offered) {
 		if route[0].Kind != steps.Settle {
 			q.offered = append(q.offered, route)
 		}
@@ -84,14 +84,19 @@ func (q *question) tuner(k *routes.Case, book costs.Book) *search.Tuner {
 func (q *question) field(t *search.Tuner, pass func(routes.Route) bool) search.Field {
 	f := search.Field{Tuner: t, Warm: q.warm}
 	for _, r := range q.offered {
-		if r.CarrierOf() != "" && (len(q.lot.Routes) == 0 || q.lot.Routes[0].ID != r.ID()) {
-			continue // a carrier that does not lead costs more time here than it tells
-		}
 		if pass == nil || pass(r) {
 			f.Routes = append(f.Routes, r)
 		}
 	}
 	return f
+}
+
+// quick leaves the carriers out but for the one that leads: they take more time here
+// than they tell.
+func (q *question) quick(all []routes.Route) []routes.Route {
+	return slices.DeleteFunc(slices.Clone(all), func(r routes.Route) bool {
+		return r.CarrierOf() != "" && (len(q.lot.Routes) == 0 || q.lot.Routes[0].ID != r.ID())
+	})
 }
 
 func (q *question) withLot(change func(*job.Lot)) *search.Tuner {
