@@ -35,7 +35,7 @@ func stagesOf(r *routeModel, constants []routes.Constants) []*stageModel {
 	soaks, sieves, foreruns, traps := 0, 0, 0, 0
 	for i, o := range run.Outcomes {
 		s := &stageModel{Outcome: o, route: r, no: i + 1, last: i == len(run.Outcomes)-1}
-		if i < len(constants) {
+		if i < len(constants) && run.Route.CarrierOf() == "" { // a carrier goes along to the end
 			s.constants = constants[i]
 		}
 		if !s.last && s.needsCurve() && i < len(run.Settings.HandOverMgPerKg) {
