@@ -94,6 +94,9 @@ func (f *flow) upTo(places int, accounts bool) error {
 }
 
 func (f *flow) stage(place int, accounts bool) (turn, error) {
+	if f.carried(place) {
+		return f.asPlanned(place), nil
+	}
 	switch f.run.Route[place].Kind {
 	case steps.Soak:
 		return f.soak(place)
@@ -113,6 +116,13 @@ func (f *flow) stage(place int, accounts bool) (turn, error) {
 		return f.boil(place, accounts)
 	}
 	return f.asPlanned(place), nil
+}
+
+// carried is a carrier distillation, or stripping the carrier after it: three
+// components are not followed through the draws.
+func (f *flow) carried(place int) bool {
+	r := f.run.Route
+	return r[place].Carrier != "" || place > 0 && r[place].Kind == steps.Forerun && r[place-1].Carrier != ""
 }
 
 // dry sets the water of every draw that has not failed yet; not ok fails one.
