@@ -46,7 +46,7 @@ func (p *page) verdict(r *study.Report, l *study.Lot) {
 	case len(reach) > 0:
 		best := l.Best()
 		p.say(3, 0, "Best: %s (%s). %s", best.Label, best.ID, reason(r, sureEnough(reach)))
-		p.say(3, 0, "It leaves %s after %s of attended work, %s in all.", quantity.FormatWater(best.Run.WaterOut),
+		p.say(3, 0, "It leaves %s%s after %s of attended work, %s in all.", quantity.FormatWater(best.Run.WaterOut), unseen(l, best),
 			hours(best.Run.HoursAttended), hours(best.Run.HoursTotal))
 		p.year(r, best)
 		p.sure(r, l)
@@ -57,6 +57,14 @@ func (p *page) verdict(r *study.Report, l *study.Lot) {
 	default:
 		p.say(3, 0, "No route can be offered; the reasons stand below.")
 	}
+}
+
+// unseen says that a computed water content is less than a test can show.
+func unseen(l *study.Lot, route *study.Route) string {
+	if route.Run.WaterOut >= l.Detection {
+		return ""
+	}
+	return fmt.Sprintf(" as computed, less than the %s that the test can show,", quantity.FormatWater(l.Detection))
 }
 
 // reason says why the first of the routes is the best by the job's objective.
