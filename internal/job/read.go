@@ -192,9 +192,6 @@ func (r *reader) note(n *document.Node, format string, args ...any) {
 	r.notes = append(r.notes, note{order, n.Where() + ": " + fmt.Sprintf(format, args...)})
 }
 
-// notYet says that a key is understood and has no effect so far.
-func (r *reader) notYet(n *document.Node) { r.note(n, "not used yet") }
-
 func (r *reader) sortedNotes() []string {
 	sort.SliceStable(r.notes, func(i, j int) bool { return r.notes[i].line < r.notes[j].line })
 	var texts []string

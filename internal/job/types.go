@@ -27,7 +27,7 @@ type Job struct {
 	Exclude     Exclude
 	Lots        []Lot
 	Defaults    []Default // what the catalog filled in
-	Warnings    []string  // "not used yet" and readings that were interpreted
+	Warnings    []string  // readings that were interpreted, and what the reader should know
 	Invented    bool      // the demonstration job: every price in it is invented
 }
 
