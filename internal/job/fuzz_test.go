@@ -21,31 +21,39 @@ func FuzzRead(f *testing.F) {
 	f.Add([]byte(small))
 	f.Add(Template(cat.Solvents["tetrahydrofuran"]))
 	f.Fuzz(func(t *testing.T, data []byte) {
-		started := time.Now()
-		j, err := Read("job.yaml", data, cat)
-		if took := time.Since(started); took > time.Second {
-			t.Errorf("took %v for %d bytes", took, len(data))
-		}
-		var invalid *document.Invalid
-		switch {
-		case err == nil && j != nil:
-			checkJob(t, j)
-		case j != nil || !errors.As(err, &invalid):
-			t.Errorf("job %v with error %v", j, err)
-		default:
-			checkMessages(t, invalid, strings.Contains(string(data), "%!"))
+		invalid := answered(t, data, func() (*Job, error) { return Read("job.yaml", data, cat) })
+		if invalid != nil {
+			checkMessages(t, "job.yaml:", invalid, strings.Contains(string(data), "%!"))
 		}
 	})
 }
 
+// answered wants an answer soon that is either a job in range, then it returns nil,
+// or messages and no job.
+func answered(t *testing.T, data []byte, read func() (*Job, error)) (invalid *document.Invalid) {
+	t.Helper()
+	started := time.Now()
+	j, err := read()
+	if took := time.Since(started); took > time.Second {
+		t.Errorf("took %v for %d bytes", took, len(data))
+	}
+	switch {
+	case err == nil && j != nil:
+		checkJob(t, j)
+	case j != nil || !errors.As(err, &invalid):
+		t.Errorf("job %v with error %v", j, err)
+	}
+	return invalid
+}
+
 // checkMessages looks for messages that are unprintable, endless or wrongly formatted;
 // "%!" shows the latter unless it was typed.
-func checkMessages(t *testing.T, invalid *document.Invalid, typed bool) {
+func checkMessages(t *testing.T, file string, invalid *document.Invalid, typed bool) {
 	if invalid.Count() == 0 || len(invalid.Lines()) > 51 {
 		t.Errorf("%d messages for %d problems", len(invalid.Lines()), invalid.Count())
 	}
 	for _, line := range invalid.Lines() {
-		if !strings.HasPrefix(line, "job.yaml:") || strings.ContainsAny(line, "\n\r\x1b\x00") || !typed && strings.Contains(line, "%!") || len(line) > 3000 {
+		if !strings.HasPrefix(line, file) || strings.ContainsAny(line, "\n\r\x1b\x00") || !typed && strings.Contains(line, "%!") || len(line) > 3000 {
 			t.Errorf("message %q", line)
 		}
 	}

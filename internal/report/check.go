@@ -6,8 +6,8 @@ import (
 	"parch/internal/job"
 )
 
-// Check prints what a job file that is in order left to the catalog, and what in
-// it is not used yet.
+// Check prints what a job file that is in order left to the catalog, and how its
+// readings were understood.
 func Check(w io.Writer, j *job.Job) error {
 	p := &page{w: w}
 	p.say(0, 2, "%s is in order: %s, in %s.", j.File, count(float64(len(j.Lots)), "lot", "lots"), j.Currency)
