@@ -128,6 +128,15 @@ func (n *Node) Text() string {
 	return text
 }
 
+// Is says whether the node is a number with a unit of dimension d. It records no problem.
+func (n *Node) Is(d quantity.Dimension) bool {
+	if n == nil || n.IsList() || n.IsMap() {
+		return false
+	}
+	_, err := quantity.Parse(n.value, d)
+	return err == nil
+}
+
 // Quantity reads a number with a unit. ok is false where a problem was recorded.
 func (n *Node) Quantity(d quantity.Dimension) (reading quantity.Reading, ok bool) {
 	text, ok := n.scalar()

@@ -118,6 +118,8 @@ func TestBadValues(t *testing.T) {
 		{"lots:", "exclude: {steps: [boil]}\nlots:", `job.yaml:1: exclude.steps[0]: "boil" is not a step; allowed: settle, trap, forerun, salt, soak, column, reactive, buy`},
 		{"lots:", "accept: {agents: [gunpowder]}\nlots:", `job.yaml:1: accept.agents[0]: "gunpowder" is not a drying agent; allowed: sieve-3a, sieve-4a, sodium`},
 		{"lots:", "stock: [{item: sieve-3a, on hand: 4 L}]\nlots:", `job.yaml:1: stock[0].on hand: "4 L" is a volume, but a mass is wanted here; allowed: kg, g, mg, ug, t, lb`},
+		{"lots:", "stock: [{item: toluene, on hand: {a: 1}}]\nlots:", `job.yaml:1: stock[0].on hand: a single value is wanted here, this is a set of keys`},
+		{"lots:", "stock: [{item: toluene, on hand: 1e9 L}]\nlots:", `job.yaml:1: stock[0].on hand: "1e9 L" is not possible here; allowed: 0 L to 1000 m3`},
 		// names
 		{"- solvent", "- name: =1+1\n  solvent", `job.yaml:2: lots[0].name: "=1+1" begins with "="; in a sheet that would be taken for a formula. Begin with a letter or a digit`},
 		{"- solvent", "- name: \"a\\nb\"\n  solvent", `job.yaml:2: lots[0].name: "a\nb" contains a line break or a character that cannot be printed`},

@@ -57,15 +57,26 @@ func (r *reader) stock(n *document.Node) {
 		item := r.known(f.Need("item"), r.storedItems(), "an agent or a solvent of the catalog")
 		stock := Stock{Item: item}
 		var ok bool
-		stock.OnHandKg, ok = r.measure(f.Need("on hand"), quantity.Mass, between(0, 1e6, "0 kg to 1000000 kg"))
+		stock.OnHandKg, ok = r.stored(f.Need("on hand"), item)
 		if safety := f.Get("safety stock"); safety != nil {
-			stock.SafetyKg, _ = r.measure(safety, quantity.Mass, between(0, 1e6, "0 kg to 1000000 kg"))
+			stock.SafetyKg, _ = r.stored(safety, item)
 		}
 		if item == "" || !ok || r.twice(entry, item, lines) {
 			continue
 		}
 		r.job.Stock = append(r.job.Stock, stock)
 	}
+}
+
+// stored reads kg on the shelf. A solvent may be given by volume too, it weighs
+// what it weighs at room temperature.
+func (r *reader) stored(n *document.Node, item string) (kg float64, ok bool) {
+	solvent := r.cat.Solvents[strings.TrimSuffix(item, "-dry")]
+	if solvent != nil && n.Is(quantity.Volume) {
+		m3, ok := r.measure(n, quantity.Volume, between(0, 1e3, "0 L to 1000 m3"))
+		return m3 * solvent.Pure.DensityKgPerM3.At(r.job.Site.RoomK), ok
+	}
+	return r.measure(n, quantity.Mass, between(0, 1e6, "0 kg to 1000000 kg"))
 }
 
 // storedItems lists what may lie on the shelf: agents, solvents and their dry grades.

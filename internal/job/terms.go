@@ -88,7 +88,7 @@ func (r *reader) storage(n *document.Node) {
 
 // limit reads a volume or a mass.
 func (r *reader) limit(n *document.Node, limit *StorageLimit) (ok bool) {
-	if _, err := quantity.Parse(n.Text(), quantity.Volume); err == nil {
+	if n.Is(quantity.Volume) {
 		limit.M3, ok = r.measure(n, quantity.Volume, between(1e-6, 1000, "1 mL to 1000 m3"))
 		return ok
 	}

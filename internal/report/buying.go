@@ -28,15 +28,19 @@ func (p *page) year(r *study.Report, best *study.Route) {
 		if y.MakeUpLitres > 0 {
 			text += fmt.Sprintf("; %s of lost solvent made up", quantity.FormatVolume(y.MakeUpLitres/1e3))
 		}
-		p.say(3, 0, "%s.%s", text, investment(y.Investment, r.Job.Currency))
+		p.say(3, 0, "%s.%s", text, investment(y, r.Job.Currency))
 	}
 	if f := best.Footprint; f.WasteKg != nil {
 		p.say(3, 0, "A batch emits %s, and leaves %s.", f.Text(), wastes(f.WasteKg))
 	}
 }
 
-func investment(v *costs.Investment, currency string) string {
+func investment(y *costs.Year, currency string) string {
+	v := y.Investment
 	if v == nil {
+		if y.Equipment.IsPositive() {
+			return " Every route that has its prices buys equipment: there is none to reckon the payback against."
+		}
 		return ""
 	}
 	text := fmt.Sprintf(" Against %s, which buys none, the equipment never pays back", v.Against)
