@@ -4,8 +4,10 @@ import (
 	"bytes"
 	"math"
 	"runtime"
+	"slices"
 	"testing"
 
+	"gonum.org/v1/gonum/stat"
 	"gonum.org/v1/gonum/stat/distuv"
 
 	"parch/catalog"
@@ -130,5 +132,33 @@ func TestSameDrawsOnAnyNumberOfProcessors(t *testing.T) {
 		if !bytes.Equal(one, outcome(procs)) {
 			t.Errorf("%d processors give other results than one", procs)
 		}
+	}
+}
+
+// A draw in which the plan fails (a lot too wet for the hydride) does what was planned
+// and costs it: no failed draw is cheap.
+func TestAFailedDrawCostsWhatWasDone(t *testing.T) {
+	k, l := lotOf(t, "lots:\n- {solvent: dichloromethane, batch: 5 L, water: 400 to 600 mg/kg, target: 60 mg/kg}\n", 1000)
+	run, err := k.Run(routes.Route{{Kind: steps.Reactive, Agent: "calcium-hydride"}}, routes.Settings{HandOverMgPerKg: []float64{}})
+	if err != nil {
+		t.Fatal(err)
+	}
+	o, err := l.Through(&run)
+	if err != nil {
+		t.Fatal(err)
+	}
+	failed, done := []float64{}, []float64{}
+	for i, w := range o.Water {
+		if math.IsInf(w, 1) {
+			failed = append(failed, o.CostPerLitre[i])
+		} else {
+			done = append(done, o.CostPerLitre[i])
+		}
+	}
+	if len(failed) < 50 || len(done) < 50 {
+		t.Fatalf("%d failed, %d done: the test says nothing", len(failed), len(done))
+	}
+	if low, least := slices.Min(failed), slices.Min(done); low < 0.9*least || math.Abs(stat.Mean(failed, nil)/stat.Mean(done, nil)-1) > 0.1 {
+		t.Errorf("failed draws cost from %g, %g on average; the others from %g, %g on average", low, stat.Mean(failed, nil), least, stat.Mean(done, nil))
 	}
 }

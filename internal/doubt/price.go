@@ -252,13 +252,17 @@ func (f *flow) litresOf(kg []float64) []float64 {
 	return f.as(1, kg, k.Mixture.Solvent.DensityKgPerM3.At(k.Job.Site.RoomK)*1e-3)
 }
 
-// litres delivered.
+// litres delivered. A draw in which the plan fails costs what was done and leaves
+// no reading: its solvent is counted with the water that was planned.
 func (f *flow) litres() []float64 {
 	k := f.lot.Case
 	room := k.Job.Site.RoomK
 	all := make([]float64, f.lot.n)
 	for i, kg := range f.kg {
-		w := math.Min(f.water[i], 0.99)
+		w := f.water[i]
+		if math.IsInf(w, 1) {
+			w = f.run.WaterOut
+		}
 		all[i] = 1e3 * (kg/k.Mixture.Solvent.DensityKgPerM3.At(room) + kg*w/(1-w)/k.Mixture.Water.DensityKgPerM3.At(room))
 	}
 	return all
