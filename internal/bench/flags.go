@@ -24,7 +24,7 @@ var uses = map[steps.Kind]use{
 	steps.Salt:     {takes: []string{"agent", "to", "dose", "hours", "free-water"}, needs: []string{"agent"}, agents: []string{"salt"}},
 	steps.Soak:     {takes: []string{"agent", "to", "dose", "hours", "stirred", "activated", "height", "free-water", "charges", "powder"}, needs: []string{"agent"}, agents: []string{"sieve", "oxide"}},
 	steps.Column:   {takes: []string{"agent", "to", "dose", "activated"}, needs: []string{"agent"}, agents: []string{"sieve", "oxide"}},
-	steps.Reactive: {takes: []string{"agent", "dose", "hours", "power", "pressure", "peroxide"}, needs: []string{"agent"}, agents: []string{"reactive"}},
+	steps.Reactive: {takes: []string{"agent", "to", "dose", "hours", "power", "pressure", "peroxide"}, needs: []string{"agent"}, agents: []string{"reactive"}},
 }
 
 // Kinds are the steps that can be asked for, in the order in which a lot meets them.
@@ -85,8 +85,6 @@ func why(k steps.Kind, name string) string {
 		return ": free water is let settle first"
 	case name == "to" && k == steps.Settle:
 		return ": it leaves the solvent saturated"
-	case name == "to" && k == steps.Reactive:
-		return ": what is left was measured or is that of its class, and no dose or time is solved for"
 	}
 	return ""
 }

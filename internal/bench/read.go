@@ -201,8 +201,6 @@ func (r *reader) solvable() {
 		switch {
 		case dose && hours && to:
 			r.mistake("--dose, --hours and --to are one too many", "give two of them; the third is solved for")
-		case r.q.Charges > 1 && !dose && !hours:
-			r.mistake("--charges needs --dose or --hours", "--dose is that of all charges together, --hours the time of each")
 		case !to && !(dose && hours):
 			r.mistake("soak needs --dose and --hours, or --to", `--to alone sizes the dose for overnight, 24 h and 72 h; with --hours it solves for the dose, with --dose for the time`)
 		}
@@ -210,9 +208,9 @@ func (r *reader) solvable() {
 		if !dose && !to {
 			r.mistake("column needs --to or --dose", `--to "20 mg/kg" sizes the bed; --dose "100 g/L" is the bed per litre of the lot`)
 		}
-	case steps.Salt:
-		if dose && to {
-			r.mistake("--dose and --to are one too many", "--to solves for the dose")
+	case steps.Salt, steps.Reactive:
+		if dose && hours && to {
+			r.mistake("--dose, --hours and --to are one too many", "give two of them; the third is solved for")
 		}
 	}
 }

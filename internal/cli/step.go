@@ -21,6 +21,7 @@ func (p *program) step() *cli.Command {
 			"oven's temperature with what was done after it (\"250 C, closed hot, 30 d\", \"200 C, vacuum 1 hPa\"),\n" +
 			"or a key of the catalog such as opened-tin.\n" +
 			"A soak takes two of --dose, --hours and --to; with --to alone it sizes overnight, 24 h and 72 h.\n" +
+			"A salt takes up to two of them; a reactive agent says whether need and surplus reach --to.\n" +
 			"The exit status is 1 where the step is refused or does not reach what --to asks for.",
 		Flags: []cli.Flag{
 			&cli.StringFlag{Name: "solvent", Usage: "the `NAME` of the solvent, by key, name or alias"},

@@ -25,7 +25,7 @@ func StepText(w io.Writer, a *bench.Answer) error {
 	p.say(0, 3, "%s", stepTitle(a))
 	p.line("")
 	p.stepResult(a)
-	p.sizes(a.Sizes)
+	p.sizes(a.Sizes, a.Question.Charges)
 	p.advice(a.Advice)
 	p.figures(&a.Outcome)
 	p.notes("Read as", a.Question.Notes)
@@ -132,12 +132,17 @@ func inUnits(q *bench.Question, water float64) string {
 	return strings.Join(append(parts, quantity.FormatByVolume(water, kgPerM3), quantity.FormatMolar(water, kgPerM3)), " = ")
 }
 
-// sizes shows the dose for each of the times that people plan with.
-func (p *page) sizes(all []steps.SoakSize) {
+// sizes shows the dose for each of the times that people plan with; of several
+// charges each has the time to itself.
+func (p *page) sizes(all []steps.SoakSize, charges int) {
 	if len(all) == 0 {
 		return
 	}
-	p.heading("Sizes for the times that people plan with:")
+	heading := "Sizes for the times that people plan with:"
+	if charges > 1 {
+		heading = fmt.Sprintf("Sizes of %d charges together, each left for the time:", charges)
+	}
+	p.heading(heading)
 	rows := make([][]string, len(all))
 	for i, s := range all {
 		rows[i] = []string{

@@ -4,11 +4,13 @@ import (
 	"fmt"
 
 	"parch/catalog"
+	"parch/internal/quantity"
 	"parch/internal/steps"
 )
 
-// singleSalt stirs in the dose that is given, the least that reaches the goal, or
-// the usual one: also where no dose reaches the goal and more of it is no help.
+// singleSalt stirs in the dose that is given for the least time that reaches the
+// goal, the least dose that reaches it, or the usual one: also where no dose reaches
+// the goal and more of it is no help.
 func (c *Case) singleSalt(a Asked, s *Single) (err error) {
 	agent := c.Catalog.Agents[a.Agent]
 	rules, rig := c.saltRules(agent), c.saltRig(a.TimeS)
@@ -16,8 +18,15 @@ func (c *Case) singleSalt(a Asked, s *Single) (err error) {
 	if given(a.DoseKgPerM3) {
 		dose = a.DoseKgPerM3
 	}
+	if given(a.Goal) && given(a.DoseKgPerM3) {
+		if s.Outcome, err = steps.SaltUntil(c.Mixture, c.Feed, a.Goal, dose, c.salt(agent), rules, rig); err != nil {
+			return err
+		}
+		rig.TimeS = s.Figure("stirred or stood") * 60
+		return c.bandOfSalt(agent, s, rules, rig)
+	}
 	s.Outcome, err = steps.RunSalt(c.Mixture, c.Feed, dose, c.salt(agent), rules, rig)
-	if err == nil && given(a.Goal) && !given(a.DoseKgPerM3) {
+	if err == nil && given(a.Goal) {
 		var solved steps.Outcome
 		solved, err = steps.SaltFor(c.Mixture, c.Feed, a.Goal, c.salt(agent), rules, rig)
 		if solved.AgentKg < s.AgentKg || solved.Out.Water() < s.Out.Water()*(1-1e-9) {
@@ -76,7 +85,9 @@ func (c *Case) bandOfSalt(agent *catalog.Agent, s *Single, rules steps.SaltRules
 }
 
 // singleReactive charges the dose that is given, or need and usual surplus, and
-// refluxes for the time that is given.
+// refluxes for the time that is given, or the usual one. A goal is reached by need
+// and surplus in that time or not at all: no more agent and no more time is known to
+// leave less than was measured, or than agents of the class leave.
 func (c *Case) singleReactive(a Asked, s *Single) (err error) {
 	agent, rig := c.reactiveAgent(a.Agent), c.reactiveRig(a.Agent)
 	if given(a.TimeS) {
@@ -93,6 +104,7 @@ func (c *Case) singleReactive(a Asked, s *Single) (err error) {
 	if need := s.Figure("agent needed") / 1e3 / volumeM3; given(a.DoseKgPerM3) && a.DoseKgPerM3 < need*(1-1e-9) {
 		return fmt.Errorf("%w: %.3g g/L of %s are under the %.3g g/L that the water takes", steps.ErrNoSense, a.DoseKgPerM3, a.Agent, need)
 	}
+	s.tellGoal(a.Goal, rig.RefluxS, agent.LeastRefluxS)
 	s.Low, s.High = s.Figure("residual, low")*1e-6, s.Figure("residual, high")*1e-6
 	if found.Water > 0 {
 		s.Bands = append(s.Bands, "what was measured for the pair")
@@ -100,6 +112,21 @@ func (c *Case) singleReactive(a Asked, s *Single) (err error) {
 		s.Bands = append(s.Bands, fmt.Sprintf("what agents of the class leave, a factor of %.3g either way", agent.ClassBand))
 	}
 	return nil
+}
+
+// tellGoal says whether a reactive step reaches a goal (kg/kg), and with what.
+func (s *Single) tellGoal(goal, refluxS, leastS float64) {
+	switch {
+	case !given(goal):
+	case s.Out.Water() <= goal:
+		s.RuledBy, s.Why = s.WhyText, steps.AtTarget
+		s.WhyText = fmt.Sprintf("%s or less after %.3g h of reflux over %.3g g: the need and its surplus", quantity.FormatWater(goal), refluxS/3600, s.Figure("agent charged"))
+	default:
+		if refluxS >= leastS {
+			s.WhyText += "; neither more agent nor more time is known to leave less"
+		}
+		s.RuledBy = s.WhyText
+	}
 }
 
 func (c *Case) reactiveAgent(key string) steps.ReactiveAgent {

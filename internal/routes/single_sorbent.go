@@ -23,10 +23,8 @@ func (c *Case) singleSoak(a Asked, s *Single) (err error) {
 		s.Outcome, err = steps.SeriesUntil(c.Mixture, c.Feed, a.Goal, a.DoseKgPerM3, a.Charges, sorbent, rig)
 	case given(a.TimeS) && given(a.Goal):
 		s.Outcome, err = steps.SeriesFor(c.Mixture, c.Feed, a.Goal, a.TimeS, a.Charges, sorbent, rig)
-	case a.Charges > 1:
-		return fmt.Errorf("%w: several charges need their dose or their time", ErrAsked)
 	case given(a.Goal):
-		err = c.sizeSoak(a.Goal, s, sorbent, rig)
+		err = c.sizeSoak(a, s, sorbent, rig)
 	default:
 		return fmt.Errorf("%w: a soak needs two of dose, time and goal, or the goal", ErrAsked)
 	}
@@ -60,10 +58,10 @@ func (c *Case) over(a Asked, doseKgPerM3, timeS float64, sorbent steps.Sorbent, 
 	return steps.SoakSeries(c.Mixture, c.Feed, steps.EqualCharges(a.Charges, kg, timeS), sorbent, rig)
 }
 
-// sizeSoak sizes the dose for each of the usual times. The outcome is that of the
+// sizeSoak sizes the dose for each of the usual times, which each charge has to itself. The outcome is that of the
 // shortest that reaches the goal, or of the longest.
-func (c *Case) sizeSoak(goal float64, s *Single, sorbent steps.Sorbent, rig steps.SoakRig) (err error) {
-	if s.Sizes, err = steps.SizeSoak(c.Mixture, c.Feed, goal, sorbent, rig, steps.SoakTimes...); err != nil {
+func (c *Case) sizeSoak(a Asked, s *Single, sorbent steps.Sorbent, rig steps.SoakRig) (err error) {
+	if s.Sizes, err = steps.SizeSeries(c.Mixture, c.Feed, a.Goal, a.Charges, sorbent, rig, steps.SoakTimes...); err != nil {
 		return err
 	}
 	shown := s.Sizes[len(s.Sizes)-1]
@@ -73,7 +71,7 @@ func (c *Case) sizeSoak(goal float64, s *Single, sorbent steps.Sorbent, rig step
 			break
 		}
 	}
-	s.Outcome, err = steps.SoakFor(c.Mixture, c.Feed, goal, shown.Hours*3600, sorbent, rig)
+	s.Outcome, err = steps.SeriesFor(c.Mixture, c.Feed, a.Goal, shown.Hours*3600, a.Charges, sorbent, rig)
 	return err
 }
 

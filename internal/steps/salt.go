@@ -127,6 +127,38 @@ func SaltFor(m *thermo.Mixture, feed Lot, goal float64, salt SaltAgent, rules Sa
 	})
 }
 
+// SaltUntil stirs a given dose (kg per m3) in for the least time that may be claimed
+// to bring a lot to goal (kg/kg), or for the time of the claim where none may: more
+// time is not claimed to take more.
+func SaltUntil(m *thermo.Mixture, feed Lot, goal, doseKgPerM3 float64, salt SaltAgent, rules SaltRules, rig SaltRig) (Outcome, error) {
+	return withCarrier(feed, func(lot Lot) (Outcome, error) {
+		b, err := newSaltBath(m, lot, salt, rules, rig)
+		if err := errors.Join(err, checkDose(doseKgPerM3)); err != nil {
+			return Outcome{}, err
+		}
+		b.rig.TimeS = b.time(goal, doseKgPerM3)
+		return b.run(doseKgPerM3, goal), nil
+	})
+}
+
+// time is found by bisection; the claim falls with it.
+func (b *saltBath) time(goal, doseKgPerM3 float64) float64 {
+	h := hydrate(b.m, b.feed, b.salt, b.leaves, doseKgPerM3*b.volumeM3)
+	least, most := 0.0, b.rules.ClaimTimeS
+	if b.claim(h, doseKgPerM3, most) > goal {
+		return most
+	}
+	for most-least > 1e-9*b.rules.ClaimTimeS {
+		mid := (least + most) / 2
+		if b.claim(h, doseKgPerM3, mid) <= goal {
+			most = mid
+		} else {
+			least = mid
+		}
+	}
+	return most
+}
+
 // dose is found by bisection: the claim has steps where a pair is used up.
 func (b *saltBath) dose(goal float64) float64 {
 	least, most := 0.0, b.salt.MaxDoseKgPerM3

@@ -123,6 +123,55 @@ func SeriesUntil(m *thermo.Mixture, feed Lot, goal, doseKgPerM3 float64, n int, 
 	return reachedBySeries(o, n), err
 }
 
+// SizeSeries is SizeSoak for n equal charges, each of which has the time to itself.
+// The grams are those of all charges together: for capacity of as much as all hold
+// when none is hurried, for speed with each taking its share of ln(w_0/goal).
+func SizeSeries(m *thermo.Mixture, feed Lot, goal float64, n int, sorbent Sorbent, rig SoakRig, timesS ...float64) ([]SoakSize, error) {
+	if n <= 1 {
+		return SizeSoak(m, feed, goal, sorbent, rig, timesS...)
+	}
+	feed.SolventKg, feed.CarrierKg = feed.SolventKg+feed.CarrierKg, 0
+	b, err := newBath(m, feed, sorbent, rig)
+	if err != nil {
+		return nil, err
+	}
+	unhurried := sorbent
+	unhurried.MinDoseKgPerM3 = 0
+	ample, err := SeriesFor(m, feed, goal, longestSoakS/float64(n), n, unhurried, rig)
+	if err != nil {
+		return nil, err
+	}
+	capacityGrams := math.NaN()
+	if ample.Why == AtTarget {
+		capacityGrams = ample.AgentKg * 1e3
+	}
+	sizes := make([]SoakSize, 0, len(timesS))
+	for _, timeS := range timesS {
+		o, err := SeriesFor(m, feed, goal, timeS, n, sorbent, rig)
+		if err != nil {
+			return nil, err
+		}
+		sizes = append(sizes, b.sizeOf(o, goal, timeS, n, capacityGrams))
+	}
+	return sizes, nil
+}
+
+func (b *bath) sizeOf(o Outcome, goal, timeS float64, n int, capacityGrams float64) SoakSize {
+	s := SoakSize{
+		Hours: timeS / secondsPerHour, Reached: o.Out.Water(), Advice: o.WhyText,
+		CapacityGrams: capacityGrams, SpeedGrams: math.NaN(), DoseGrams: math.NaN(),
+	}
+	if k := math.Log(b.feed.Water()/goal) / float64(n) / timeS; k < b.mixPerS {
+		s.SpeedGrams = float64(n) * b.volumeM3 * 1e3 / (b.beadPerS * (1/k - 1/b.mixPerS))
+	}
+	s.Capacity, s.Speed, s.Dose = s.CapacityGrams/b.volumeM3/1e3, s.SpeedGrams/b.volumeM3/1e3, o.Figure("dose")
+	if s.Enough = o.Why == AtTarget; s.Enough {
+		s.AtLeast = s.Dose <= float64(n)*b.sorbent.MinDoseKgPerM3*(1+1e-9)
+		s.DoseGrams, s.Ruling = o.AgentKg*1e3, s.SoakDose.Ruling()
+	}
+	return s
+}
+
 func reachedBySeries(o Outcome, n int) Outcome {
 	o.Why = AtTarget
 	o.WhyText = fmt.Sprintf("%s with the last of %d charges", quantity.FormatWater(o.Out.Water()), n)

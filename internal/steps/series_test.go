@@ -62,3 +62,32 @@ func TestPowder(t *testing.T) {
 func hasWord(all []string, word string) bool {
 	return slices.ContainsFunc(all, func(s string) bool { return strings.Contains(s, word) })
 }
+
+// The sizes of several charges lead to the goal, each in its time; more time never
+// asks for more, and one charge is sized as by SizeSoak.
+func TestSizesOfASeries(t *testing.T) {
+	m := fromPerry(t, "ethanol")
+	feed, sieve, rig := litres(m, 1, 1500e-6), sieve3A(t, 0.02), stirred(t, "ethanol")
+	sizes, err := steps.SizeSeries(m, feed, 20e-6, 2, sieve, rig, steps.SoakTimes...)
+	if err != nil {
+		t.Fatal(err)
+	}
+	for i, s := range sizes {
+		o, err := steps.SoakSeries(m, feed, steps.EqualCharges(2, s.DoseGrams/1e3, s.Hours*3600), sieve, rig)
+		if err != nil || !s.Enough {
+			t.Fatalf("%+v, %v", s, err)
+		}
+		near(t, "reached", o.Out.Water(), 20e-6, 1e-6)
+		if s.DoseGrams < s.CapacityGrams*(1-1e-6) || i > 0 && s.DoseGrams > sizes[i-1].DoseGrams*(1+1e-9) {
+			t.Errorf("%+v after %+v", s, sizes[max(0, i-1)])
+		}
+	}
+	one, err := steps.SizeSeries(m, feed, 20e-6, 1, sieve, rig, day(1))
+	if err != nil {
+		t.Fatal(err)
+	}
+	whole, err := steps.SizeSoak(m, feed, 20e-6, sieve, rig, day(1))
+	if err != nil || one[0] != whole[0] || sizes[1].DoseGrams >= whole[0].DoseGrams {
+		t.Errorf("%+v, %+v, %v", one[0], whole[0], err)
+	}
+}
