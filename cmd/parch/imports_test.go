@@ -32,6 +32,7 @@ var floors = []string{
 	"parch/internal/thermo",
 	"parch/internal/document",
 	"parch/internal/quantity",
+	"parch/internal/memo",
 	"parch/internal/outside",
 }
 

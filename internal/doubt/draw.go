@@ -35,13 +35,13 @@ func (l *Lot) Draw(i int) (routes.Drawn, costs.Book) {
 		}
 	}
 	for key, words := range practiceWords {
-		if c, ok := l.columns[words]; ok {
+		if c := l.Column(words); c != nil {
 			d.Practice[key] = c[i]
 		}
 	}
 	book := maps.Clone(l.Book)
 	for item, p := range book {
-		if c, ok := l.columns[namePrice+p.Label]; ok {
+		if c := l.Column(namePrice + p.Label); c != nil {
 			p.PerUnit = p.PerUnit.Mul(decimal.NewFromFloat(c[i]))
 			book[item] = p
 		}

@@ -19,6 +19,7 @@ type flow struct {
 	water []float64 // kg/kg, after the stages so far; +Inf where a draw has failed
 	kg    []float64 // solvent
 	turns []turn    // what each stage did
+	tally *tally    // of the last stage; nil: all draws are carried through
 }
 
 // turn is what a stage did in each draw. A nil series is as planned.
@@ -42,32 +43,37 @@ func (l *Lot) start(run *routes.Run) *flow {
 func (l *Lot) through(run *routes.Run) (*flow, error) {
 	f := l.start(run)
 	err := f.upTo(len(run.Route), true)
-	return f, errors.Join(err, l.err)
+	return f, errors.Join(err, l.failure())
 }
 
 // wet carries a run through its stages for the water alone. What stands before the
 // last stage is remembered: a search changes that stage only, and many routes share
 // what goes before.
-func (l *Lot) wet(run *routes.Run) (*flow, error) {
+func (l *Lot) wet(run *routes.Run, t *tally) (*flow, error) {
 	last := len(run.Route) - 1
-	key := ahead(run, last)
-	f := &flow{lot: l, run: run}
-	known, ok := l.ahead[key]
-	if !ok {
-		f = l.start(run)
-		if err := f.upTo(last, false); err != nil {
-			return nil, err
-		}
-		known = wetness{f.water, f.kg}
-		l.ahead[key] = known
+	known := l.ahead.Of(ahead(run, last), func() (r result[wetness]) {
+		f := l.start(run)
+		r.err = f.upTo(last, false)
+		r.value = wetness{f.water, f.kg}
+		return r
+	})
+	if known.err != nil {
+		return nil, known.err
 	}
-	f.water, f.kg = slices.Clone(known.water), slices.Clone(known.kg)
+	f := &flow{lot: l, run: run, water: slices.Clone(known.value.water), kg: slices.Clone(known.value.kg), tally: t}
 	_, err := f.stage(last, false)
-	return f, errors.Join(err, l.err)
+	return f, errors.Join(err, l.failure())
 }
 
 // wetness is the water (kg/kg) and the solvent (kg) of a lot in each draw.
 type wetness struct{ water, kg []float64 }
+
+// Plan tells the plans of one lot apart: doses follow from the settings.
+func Plan(run *routes.Run) string {
+	s := run.Settings
+	s.Packs = nil // prices make no difference to what is left
+	return run.Route.ID() + fmt.Sprint(s)
+}
 
 // ahead tells apart what stands before a place.
 func ahead(run *routes.Run, place int) string {
@@ -94,6 +100,9 @@ func (f *flow) upTo(places int, accounts bool) error {
 }
 
 func (f *flow) stage(place int, accounts bool) (turn, error) {
+	if err := f.lot.stopped(); err != nil {
+		return turn{}, err
+	}
 	if f.carried(place) {
 		return f.asPlanned(place), nil
 	}
@@ -137,6 +146,9 @@ func (f *flow) dry(leave func(i int, a *steps.Aside) (water float64, ok bool)) {
 			water = math.Inf(1)
 		}
 		f.water[i] = water
+		if f.tally.decided(i, water) {
+			return
+		}
 	}
 }
 

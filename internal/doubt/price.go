@@ -25,7 +25,7 @@ func (l *Lot) Through(run *routes.Run) (*Outcome, error) {
 	if len(l.Book.Missing(run.Uses)) == 0 {
 		o.CostPerLitre = f.costs()
 	}
-	return o, l.err
+	return o, l.failure()
 }
 
 // Limits are what a product must keep to, kg/kg.
@@ -38,7 +38,7 @@ func (s Limits) Met(water float64) bool {
 
 // Chance is the share of the draws in which a plan keeps to the limits.
 func (l *Lot) Chance(run *routes.Run, limits Limits) (float64, error) {
-	f, err := l.wet(run)
+	f, err := l.wet(run, nil)
 	if err != nil {
 		return 0, err
 	}

@@ -77,20 +77,21 @@ const halfEfficient = 0.5
 
 // nodesAt prepares cases at a share of the way to the ends of the inputs.
 func (l *Lot) nodesAt(share float64) (*nodes, error) {
-	if n, ok := l.nodes[share]; ok {
-		return n, nil
-	}
+	r := l.nodes.Of(share, func() (r result[*nodes]) {
+		r.value, r.err = l.newNodes(share)
+		return r
+	})
+	return r.value, r.err
+}
+
+func (l *Lot) newNodes(share float64) (*nodes, error) {
 	ends := func(in spread.Input) (lo, hi float64) {
 		return math.Log(in.Quantile(nodeTail)), math.Log(in.Quantile(1 - nodeTail))
 	}
 	lo, hi := ends(l.pair())
 	loTrend, hiTrend := ends(l.trend())
 	n := &nodes{pair: newAxis(share*lo, share*hi, pairPoints), trend: newAxis(share*loTrend, share*hiTrend, trendPoints)}
-	if err := n.fill(l.Case); err != nil {
-		return nil, err
-	}
-	l.nodes[share] = n
-	return n, nil
+	return n, n.fill(l.Case)
 }
 
 // nodeTail is the share of draws beyond either end of the nodes; they are read at it.
@@ -120,6 +121,7 @@ func (n *nodes) fill(k *routes.Case) error {
 // surface is one stage over pair, trend and ln of the water it is given: what it
 // does at once, and what goes with the way from there to where it ends.
 type surface struct {
+	stop        func() error
 	nodes       *nodes
 	kind        steps.Kind
 	goal        float64 // kg/kg, no lower than is claimed of any still
@@ -141,10 +143,19 @@ var reaches = []float64{1, 0.6, 0.3}
 // surfaceOf runs a stage in full at all nodes, or finds it done already.
 func (l *Lot) surfaceOf(run *routes.Run, place int, waters []float64) (*surface, error) {
 	goal := l.Case.GoalOf(run, place)
-	key := fmt.Sprint(run.Route[max(0, place-1):min(len(run.Route), place+2)].ID(), place, run.Settings.Stages, run.Settings.Receiver, run.Settings.ReceiverC, run.Outcomes[place].In, goal)
-	if s, ok := l.boiled[key]; ok {
-		return s, nil
+	next := steps.Kind("")
+	if place+1 < len(run.Route) {
+		next = run.Route[place+1].Kind // a pot that goes on hot
 	}
+	key := fmt.Sprint(ahead(run, place), run.Route[place], next, run.Settings.Stages, run.Settings.Receiver, run.Settings.ReceiverC, run.Outcomes[place].In, goal)
+	r := l.boiled.Of(key, func() (r result[*surface]) {
+		r.value, r.err = l.newSurface(run, place, goal, waters)
+		return r
+	})
+	return r.value, r.err
+}
+
+func (l *Lot) newSurface(run *routes.Run, place int, goal float64, waters []float64) (*surface, error) {
 	lo, hi := math.Inf(1), 0.0
 	for _, w := range waters {
 		if !math.IsInf(w, 1) {
@@ -159,9 +170,8 @@ func (l *Lot) surfaceOf(run *routes.Run, place int, waters []float64) (*surface,
 		if n, last = l.nodesAt(share); last != nil {
 			continue
 		}
-		s := &surface{nodes: n, kind: run.Outcomes[place].Kind, goal: math.Max(goal, l.Case.Catalog.Practice["trap-outlet-minimum"].SI)}
+		s := &surface{nodes: n, kind: run.Outcomes[place].Kind, goal: math.Max(goal, l.Case.Catalog.Practice["trap-outlet-minimum"].SI), stop: l.stopped}
 		if last = s.fill(run, place, lo, hi); last == nil {
-			l.boiled[key] = s
 			return s, nil
 		}
 	}
@@ -205,6 +215,9 @@ func (s *surface) each(run *routes.Run, place int, water axis, one func(k *route
 				lot := run.Outcomes[place].In
 				w := math.Exp(lnWater)
 				lot.WaterKg = lot.SolventKg * w / (1 - w)
+				if err := s.stop(); err != nil {
+					return nil, err
+				}
 				v, err := one(k, run, place, lot)
 				if err != nil {
 					return nil, err

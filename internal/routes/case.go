@@ -7,6 +7,7 @@ import (
 	"parch/catalog"
 	"parch/internal/assay"
 	"parch/internal/job"
+	"parch/internal/memo"
 	"parch/internal/mixture"
 	"parch/internal/quantity"
 	"parch/internal/steps"
@@ -26,10 +27,10 @@ type Case struct {
 	Trap    *steps.TrapEquilibrium // at the coldest receiver in reach; nil where no trap works
 	NoTrap  error                  // why
 
-	site  *equilibria // the same for all lots of the solvent
-	known map[stepKey]result
-	drawn *Drawn // nil: everything as it was planned
-	plan  *Run   // whose doses are weighed out; nil: doses follow from the goal
+	site  *equilibria                // the same for all lots of the solvent
+	known *memo.Map[stepKey, result] // nil: nothing is remembered
+	drawn *Drawn                     // nil: everything as it was planned
+	plan  *Run                       // whose doses are weighed out; nil: doses follow from the goal
 }
 
 // NewCase prepares a lot.
@@ -52,7 +53,7 @@ func NewCase(j *job.Job, lot job.Lot, c *catalog.Catalog) (*Case, error) {
 func (c *Case) With(lot job.Lot) *Case {
 	k := *c
 	k.Lot, k.Feed, k.Limit = lot, feed(c.Mixture, lot, c.Job.Site.RoomK), assay.Accept(lot.Target, c.Assay)
-	k.known = map[stepKey]result{}
+	k.known = &memo.Map[stepKey, result]{}
 	if from := k.AcceptFrom(); from > 0 && from >= k.Limit.AcceptAt {
 		k.Limit.CannotShow = fmt.Sprintf("cannot be shown: between %s and %s no reading is sure to lie in the band, each end being known to %s",
 			quantity.FormatWater(lot.NotBelow), quantity.FormatWater(lot.Target), quantity.FormatWater(k.Limit.Uncertainty))
@@ -60,6 +61,9 @@ func (c *Case) With(lot job.Lot) *Case {
 	}
 	return &k
 }
+
+// Forget drops the outcomes that are remembered for a search.
+func (c *Case) Forget() { c.known.Forget() }
 
 // feed is the lot as delivered. The batch volume is the solvent with its
 // dissolved water; free water stands beside it.

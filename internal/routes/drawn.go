@@ -56,7 +56,7 @@ func (c *Case) Under(d Drawn) (*Case, error) {
 	if err != nil {
 		return nil, err
 	}
-	k.drawn = &d
+	k.drawn, k.known = &d, nil // each lot comes by once
 	return k, nil
 }
 
@@ -241,7 +241,7 @@ func (c *Case) WithPractice(facts map[string]float64) *Case {
 		v.SI = si
 		cat.Practice[key] = v
 	}
-	under.Catalog, under.known = &cat, map[stepKey]result{}
+	under.Catalog, under.known = &cat, nil
 	return &under
 }
 

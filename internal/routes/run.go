@@ -189,19 +189,18 @@ type stepKey struct {
 // asks for the same trap, salt or forerun before many different soaks. Soaks
 // themselves are quick and many.
 func (c *Case) remembered(stage Stage, lot steps.Lot, goal float64, last bool, choice choice) (steps.Outcome, error) {
-	if stage.Kind == steps.Soak {
+	if stage.Kind == steps.Soak || c.known == nil {
 		return c.step(stage, lot, goal, last, choice)
 	}
 	if choice.carrier != "" {
 		goal, last = 0, false // a carrier is stripped to its limit, whatever follows
 	}
 	key := stepKey{stage, lot.WaterKg, lot.SolventKg, lot.TempK, goal, lot.CarrierKg, last, choice}
-	if known, ok := c.known[key]; ok {
-		return known.outcome, known.err
-	}
-	o, err := c.step(stage, lot, goal, last, choice)
-	c.known[key] = result{o, err}
-	return o, err
+	r := c.known.Of(key, func() (r result) {
+		r.outcome, r.err = c.step(stage, lot, goal, last, choice)
+		return r
+	})
+	return r.outcome, r.err
 }
 
 type result struct {

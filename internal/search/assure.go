@@ -8,10 +8,9 @@ import (
 	"parch/internal/steps"
 )
 
-// Assurance is the chance of the target that a route needs.
+// Assurance is what makes a route sure enough.
 type Assurance struct {
-	Level  float64 // 0..1
-	Chance func(run *routes.Run) (float64, error)
+	Sure func(run *routes.Run) (bool, error) // whether its chance reaches the assurance
 }
 
 // Sizes of the search for an aim.
@@ -27,8 +26,8 @@ const (
 // can be assured the best by the objective, the hand-overs before it kept. Where
 // nothing helps the run comes back as it was.
 func (t *Tuner) Assured(r routes.Route, run routes.Run, a Assurance) (routes.Run, error) {
-	chance, err := a.Chance(&run)
-	if err != nil || chance >= a.Level {
+	sure, err := a.Sure(&run)
+	if err != nil || sure {
 		return run, err
 	}
 	starts := []trial{{run: run}}
@@ -109,14 +108,13 @@ func (t *Tuner) lifted(r routes.Route, start trial, a Assurance) (trial, bool, e
 		if err != nil || !run.Meets {
 			return trial{}, false, nil
 		}
-		chance, err := a.Chance(&run)
-		if err != nil {
+		if sure, err = a.Sure(&run); err != nil {
 			return trial{}, false, err
 		}
 		score, err := t.score(&run)
-		return trial{run: run, score: score}, chance >= a.Level, err
+		return trial{run: run, score: score}, sure, err
 	}
-	if chance, err := a.Chance(&start.run); err != nil || chance >= a.Level {
+	if sure, err := a.Sure(&start.run); err != nil || sure {
 		return start, err == nil, err
 	}
 	limit := t.Case.Goal() * 1e6

@@ -71,7 +71,7 @@ func (t *Tuner) screen(all []routes.Route) (good []screened) {
 		s.CarrierDose[0] = routes.UsualCarrierDose
 		stages := t.Case.ColumnStages()
 		s.Stages[0] = stages[len(stages)-1]
-		run, err := t.Case.Run(r, s)
+		run, err := t.Run(r, s)
 		if err != nil {
 			continue
 		}

@@ -33,10 +33,16 @@ type Tuner struct {
 	Site      *costs.Arrangement // nil: uses are paid for as they come
 	Exact     bool               // hand-overs are not rounded
 	Receiver  string             // the only receiver that a trap may have; "": any that fits
+	Stop      func() error       // why no more runs are to be made; nil: never
 }
 
 // Run carries out a route and arranges its uses as the site pays for them.
 func (t *Tuner) Run(r routes.Route, s routes.Settings) (routes.Run, error) {
+	if t.Stop != nil {
+		if err := t.Stop(); err != nil {
+			return routes.Run{}, err
+		}
+	}
 	run, err := t.Case.Run(r, s)
 	if err == nil && t.Site != nil {
 		t.Site.Apply(&run, t.Case.Lot.BatchesPerYear)

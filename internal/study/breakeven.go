@@ -35,17 +35,18 @@ const (
 )
 
 func (q *question) breakEvens(ctx context.Context) error {
-	for _, ask := range []func() (*BreakEven, error){q.startWater, q.volume, q.technician, q.sievePrice, q.sieveUses, q.receiver} {
-		if err := ctx.Err(); err != nil {
-			return err
+	asks := []func() (*BreakEven, error){q.startWater, q.volume, q.technician, q.sievePrice, q.sieveUses, q.receiver}
+	found := make([]*BreakEven, len(asks))
+	err := atOnce(ctx, len(asks), func(i int) (err error) {
+		if found[i], err = asks[i](); search.NoOffer(err) {
+			return nil
 		}
-		b, err := ask()
-		if search.NoOffer(err) {
-			continue
-		}
-		if err != nil {
-			return err
-		}
+		return err
+	})
+	if err != nil {
+		return err
+	}
+	for _, b := range found {
 		if b != nil {
 			b.Answer = b.answer()
 			q.lot.BreakEvens = append(q.lot.BreakEvens, *b)

@@ -17,6 +17,11 @@ import (
 
 func worked(t *testing.T, name string) (*Report, *catalog.Catalog) {
 	t.Helper()
+	return workedWith(t, name, Options{})
+}
+
+func workedWith(t *testing.T, name string, o Options) (*Report, *catalog.Catalog) {
+	t.Helper()
 	c, err := catalog.Load()
 	if err != nil {
 		t.Fatal(err)
@@ -29,7 +34,7 @@ func worked(t *testing.T, name string) (*Report, *catalog.Catalog) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	r, err := Compare(context.Background(), j, c, Options{})
+	r, err := Compare(context.Background(), j, c, o)
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -64,7 +69,7 @@ func TestOrderChangesAtTheBreakEven(t *testing.T) {
 		r, c := worked(t, name)
 		full := *r
 		full.Book = r.prices
-		q, err := newQuestion(&full, &r.Lots[0], c)
+		q, err := newQuestion(context.Background(), &full, &r.Lots[0], c)
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -121,7 +126,7 @@ func TestSameAnswerOnAnyNumberOfCores(t *testing.T) {
 	defer runtime.GOMAXPROCS(before)
 	answer := func(cores int) string {
 		runtime.GOMAXPROCS(cores)
-		r, _ := worked(t, "reclaimed-ethyl-acetate")
+		r, _ := workedWith(t, "reclaimed-ethyl-acetate", Options{Draws: 200, Seed: 1})
 		l := r.Lots[0]
 		for i := range l.BreakEvens {
 			if b := &l.BreakEvens[i]; math.IsNaN(b.At) {
@@ -137,7 +142,7 @@ func TestSameAnswerOnAnyNumberOfCores(t *testing.T) {
 		}
 		var settings []any
 		for _, route := range l.Routes {
-			settings = append(settings, route.ID, route.Rank, route.Bill.PerBatch, route.Run.Settings)
+			settings = append(settings, route.ID, route.Rank, route.Bill.PerBatch, route.Run.Settings, route.Range, route.Recommended)
 		}
 		text, err := json.Marshal([]any{settings, l.BreakEvens, l.WhatIf, l.Front})
 		if err != nil {
@@ -145,7 +150,10 @@ func TestSameAnswerOnAnyNumberOfCores(t *testing.T) {
 		}
 		return string(text)
 	}
-	if one, four := answer(1), answer(4); one != four {
-		t.Errorf("on one core\n%s\non four\n%s", one, four)
+	one := answer(1)
+	for _, cores := range []int{2, 8} {
+		if several := answer(cores); one != several {
+			t.Errorf("on one core\n%s\non %d\n%s", one, cores, several)
+		}
 	}
 }

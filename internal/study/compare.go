@@ -67,65 +67,52 @@ func Compare(ctx context.Context, j *job.Job, c *catalog.Catalog, o Options) (*R
 	return r, nil
 }
 
-func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog, book costs.Book, o Options) (Lot, *doubts, error) {
-	given := o.Settings[lot.Name]
+// work is a lot with all that is worked out for it and does not go with prices.
+type work struct {
+	k     *routes.Case
+	site  *costs.Arrangement
+	drawn *doubts // nil: no draws are made
+}
+
+func newWork(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog, book costs.Book, o Options) (*work, error) {
 	k, err := routes.NewCase(j, lot, c)
-	if err != nil {
-		return Lot{}, nil, err
+	if err != nil || k.Dry() {
+		return &work{k: k}, err
 	}
+	w := &work{k: k, site: costs.NewArrangement(c, j)}
+	w.drawn, err = newDoubts(ctx, k, book, w.site, o)
+	return w, err
+}
+
+// compare ranks the routes of a lot at the prices of the book.
+func (w *work) compare(ctx context.Context, book costs.Book, o Options) (Lot, error) {
+	k, given := w.k, o.Settings[w.k.Lot.Name]
 	l := Lot{
-		Job: lot, Solvent: k.Solvent,
+		Job: k.Lot, Solvent: k.Solvent,
 		AcceptAt: k.Limit.AcceptAt, CannotShow: k.Limit.CannotShow, Uncertainty: k.Limit.Uncertainty, Detection: k.Assay.DetectionLimit, Injections: k.Assay.Injections,
 		Warnings: lotWarnings(k),
 	}
 	if k.Dry() {
 		l.NothingToDo = fmt.Sprintf("nothing to do: the reading of %s is at or below the %s at which a target of %s is accepted; it rests on that Karl Fischer reading of a clear sample%s",
-			quantity.FormatWater(lot.Water), quantity.FormatWater(k.Limit.AcceptAt), quantity.FormatWater(lot.Target), belowDetection(k))
-		return l, nil, nil
+			quantity.FormatWater(k.Lot.Water), quantity.FormatWater(k.Limit.AcceptAt), quantity.FormatWater(k.Lot.Target), belowDetection(k))
+		return l, nil
 	}
-	offered, excluded := k.Candidates()
-	l.Excluded = excluded
-	site := costs.NewArrangement(c, j)
-	tuner := &search.Tuner{Case: k, Book: book, Objective: search.Objective(j.Objective), Site: site}
-	if err := weigh(tuner, j, offered); err != nil {
-		return Lot{}, nil, err
-	}
-	drawn, err := newDoubts(k, book, site, o)
+	w.drawn.price(book)
+	tuner := &search.Tuner{Case: k, Book: book, Objective: search.Objective(k.Job.Objective), Site: w.site, Stop: ctx.Err}
+	offered, err := l.offer(tuner, given)
 	if err != nil {
-		return Lot{}, nil, err
+		return Lot{}, err
 	}
-	if given != nil {
-		offered = withSettings(offered, given)
-	} else {
-		var dropped []routes.Excluded
-		offered, dropped = tuner.Prune(offered)
-		l.Excluded = append(l.Excluded, dropped...)
+	if err := l.carryOut(ctx, w, tuner, offered, given); err != nil {
+		return Lot{}, err
 	}
-	for _, r := range offered {
-		if err := ctx.Err(); err != nil {
-			return Lot{}, nil, err
-		}
-		run, err := carryOut(tuner, r, given, drawn)
-		if reason, ok := refusal(err); ok {
-			l.Excluded = append(l.Excluded, routes.Excluded{ID: r.ID(), Reason: reason})
-			continue
-		}
-		if err != nil {
-			return Lot{}, nil, err
-		}
-		route := Route{ID: r.ID(), Label: k.Label(r, run.Settings), Run: run, Cautions: cautions(k, r), Warnings: append(runWarnings(k, run), ovenWarning(k, run)...)}
-		if err := route.account(k, site, book); err != nil {
-			return Lot{}, nil, fmt.Errorf("%s: %w", r.ID(), err)
-		}
-		l.Routes = append(l.Routes, route)
-	}
-	if err := drawn.judge(l.Routes, lot.FailedBatch); err != nil {
-		return Lot{}, nil, err
+	if err := w.drawn.judge(ctx, l.Routes, k.Lot.FailedBatch); err != nil {
+		return Lot{}, err
 	}
 	if l.Routes, err = ranked(l.Routes, tuner); err != nil {
-		return Lot{}, nil, err
+		return Lot{}, err
 	}
-	l.unsure(drawn)
+	l.unsure(w.drawn)
 	if given == nil {
 		l.dropDominated()
 	}
@@ -134,13 +121,62 @@ func compareLot(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog
 	}
 	if len(l.Routes) == 0 || l.Routes[0].Rank == 0 {
 		if l.NearMisses, err = nearMisses(ctx, k, tuner); err != nil {
-			return Lot{}, nil, err
+			return Lot{}, err
 		}
 	}
-	l.invest(site)
+	l.invest(w.site)
 	l.follow(k)
 	sort.SliceStable(l.Excluded, func(a, b int) bool { return l.Excluded[a].ID < l.Excluded[b].ID })
-	return l, drawn, nil
+	return l, nil
+}
+
+// offer lists the routes to be run: those of an earlier run, or all that are not
+// refused or beaten.
+func (l *Lot) offer(t *search.Tuner, given map[string]routes.Settings) ([]routes.Route, error) {
+	offered, excluded := t.Case.Candidates()
+	l.Excluded = excluded
+	if err := weigh(t, t.Case.Job, offered); err != nil {
+		return nil, err
+	}
+	if given != nil {
+		return withSettings(offered, given), nil
+	}
+	offered, dropped := t.Prune(offered)
+	l.Excluded = append(l.Excluded, dropped...)
+	return offered, nil
+}
+
+// carryOut runs the routes, several at a time, and enters what comes of them in the
+// order in which they are offered.
+func (l *Lot) carryOut(ctx context.Context, w *work, t *search.Tuner, offered []routes.Route, given map[string]routes.Settings) error {
+	all, refused := make([]Route, len(offered)), make([]string, len(offered))
+	err := atOnce(ctx, len(offered), func(i int) error {
+		r := offered[i]
+		run, err := carryOut(t, r, given, w.drawn)
+		var isRefusal bool
+		if refused[i], isRefusal = refusal(err); isRefusal {
+			return nil
+		}
+		if err != nil {
+			return err
+		}
+		all[i] = Route{ID: r.ID(), Label: w.k.Label(r, run.Settings), Run: run, Cautions: cautions(w.k, r), Warnings: append(runWarnings(w.k, run), ovenWarning(w.k, run)...)}
+		if err := all[i].account(w.k, w.site, t.Book); err != nil {
+			return fmt.Errorf("%s: %w", r.ID(), err)
+		}
+		return nil
+	})
+	if err != nil {
+		return err
+	}
+	for i, r := range offered {
+		if refused[i] != "" {
+			l.Excluded = append(l.Excluded, routes.Excluded{ID: r.ID(), Reason: refused[i]})
+			continue
+		}
+		l.Routes = append(l.Routes, all[i])
+	}
+	return nil
 }
 
 // withSettings keeps the routes of an earlier run: what is repeated is that run.

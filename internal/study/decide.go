@@ -5,8 +5,6 @@ import (
 	"math"
 	"slices"
 
-	"golang.org/x/sync/errgroup"
-
 	"parch/catalog"
 	"parch/internal/costs"
 	"parch/internal/job"
@@ -18,28 +16,24 @@ import (
 // decide adds to each lot what would change the answer: where routes change
 // places, what is given up for what, and the cheapest routes of other lots.
 func (r *Report) decide(ctx context.Context, c *catalog.Catalog, progress *meter) error {
-	group, ctx := errgroup.WithContext(ctx)
-	group.SetLimit(8)
-	for i := range r.Lots {
+	return atOnce(ctx, len(r.Lots), func(i int) error {
 		l := &r.Lots[i]
 		l.front()
 		if l.NothingToDo != "" || len(l.Routes) == 0 {
-			continue
+			return nil
 		}
-		group.Go(func() error {
-			q, err := newQuestion(r, l, c)
-			if err != nil {
-				return err
-			}
-			if err := q.breakEvens(ctx); err != nil {
-				return err
-			}
-			progress.step()
+		q, err := newQuestion(ctx, r, l, c)
+		if err != nil {
+			return err
+		}
+		return atOnce(ctx, 2, func(part int) error {
 			defer progress.step()
+			if part == 0 {
+				return q.breakEvens(ctx)
+			}
 			return q.whatIf(ctx)
 		})
-	}
-	return group.Wait()
+	})
 }
 
 // question is what is asked of a lot beyond its ranking: always by the cost of what
@@ -53,16 +47,17 @@ type question struct {
 	offered []routes.Route
 	warm    map[string]routes.Settings
 	now     map[string]float64 // cost a litre of each route as things are; +Inf where it cannot be had
+	stop    func() error
 }
 
-func newQuestion(r *Report, l *Lot, c *catalog.Catalog) (*question, error) {
+func newQuestion(ctx context.Context, r *Report, l *Lot, c *catalog.Catalog) (*question, error) {
 	lot := l.Job
 	lot.FreeWaterM3 = 0 // what is asked of the dissolved water
 	k, err := routes.NewCase(r.Job, lot, c)
 	if err != nil {
 		return nil, err
 	}
-	q := &question{lot: l, job: r.Job, k: k, book: r.Book, site: costs.NewArrangement(c, r.Job), warm: map[string]routes.Settings{}, now: map[string]float64{}}
+	q := &question{lot: l, job: r.Job, k: k, book: r.Book, site: costs.NewArrangement(c, r.Job), warm: map[string]routes.Settings{}, now: map[string]float64{}, stop: ctx.Err}
 	offered, _ := k.Candidates()
 	for _, route := range q.quick(offered) {
 		if route[0].Kind != steps.Settle {
@@ -77,7 +72,7 @@ func newQuestion(r *Report, l *Lot, c *catalog.Catalog) (*question, error) {
 }
 
 func (q *question) tuner(k *routes.Case, book costs.Book) *search.Tuner {
-	return &search.Tuner{Case: k, Book: book, Objective: search.Cost, Site: q.site, Exact: true}
+	return &search.Tuner{Case: k, Book: book, Objective: search.Cost, Site: q.site, Exact: true, Stop: q.stop}
 }
 
 // field of the routes that pass, tuned for a case and its prices.

@@ -1,6 +1,7 @@
 package study
 
 import (
+	"context"
 	"fmt"
 	"math"
 	"slices"
@@ -10,6 +11,7 @@ import (
 	"parch/internal/costs"
 	"parch/internal/doubt"
 	"parch/internal/job"
+	"parch/internal/memo"
 	"parch/internal/quantity"
 	"parch/internal/routes"
 	"parch/internal/search"
@@ -28,9 +30,16 @@ type doubts struct {
 	search, all *doubt.Lot
 	limits      doubt.Limits // Most is NaN where the target cannot be shown
 	assurance   float64
+	sures       memo.Map[string, answer[bool]] // by plan
+	chances     memo.Map[string, answer[float64]]
 }
 
-func newDoubts(k *routes.Case, book costs.Book, site *costs.Arrangement, o Options) (*doubts, error) {
+type answer[T any] struct {
+	value T
+	err   error
+}
+
+func newDoubts(ctx context.Context, k *routes.Case, book costs.Book, site *costs.Arrangement, o Options) (*doubts, error) {
 	if o.Draws == 0 {
 		return nil, nil
 	}
@@ -43,7 +52,15 @@ func newDoubts(k *routes.Case, book costs.Book, site *costs.Arrangement, o Optio
 		return nil, err
 	}
 	d.all.Like(d.search)
+	d.search.Stop, d.all.Stop = ctx.Err, ctx.Err
 	return d, nil
+}
+
+// price sets the prices of the draws.
+func (d *doubts) price(book costs.Book) {
+	if d != nil {
+		d.search.Book, d.all.Book = book, book
+	}
 }
 
 // sure tightens a run until it is sure enough, where that can be.
@@ -51,23 +68,39 @@ func (d *doubts) sure(t *search.Tuner, r routes.Route, run routes.Run) (routes.R
 	if d == nil || !run.Meets || math.IsNaN(d.limits.Most) {
 		return run, nil
 	}
-	level := math.Min(d.assurance+searchMargin, (1+d.assurance)/2)
-	return t.Assured(r, run, search.Assurance{Level: level, Chance: func(run *routes.Run) (float64, error) { return d.search.Chance(run, d.limits) }})
+	return t.Assured(r, run, search.Assurance{Sure: d.sureEnough})
+}
+
+// sureEnough reports whether a plan is, by the draws of a search. Its chance does not
+// go with prices.
+func (d *doubts) sureEnough(run *routes.Run) (bool, error) {
+	a := d.sures.Of(doubt.Plan(run), func() (a answer[bool]) {
+		a.value, a.err = d.search.Sure(run, d.limits, math.Min(d.assurance+searchMargin, (1+d.assurance)/2))
+		return a
+	})
+	return a.value, a.err
+}
+
+// chance of a plan in all draws. The draws of the search go first, as in a search:
+// given settings then read the same surfaces.
+func (d *doubts) chance(run *routes.Run) (float64, error) {
+	a := d.chances.Of(doubt.Plan(run), func() (a answer[float64]) {
+		if _, a.err = d.sureEnough(run); a.err == nil {
+			a.value, a.err = d.all.Chance(run, d.limits)
+		}
+		return a
+	})
+	return a.value, a.err
 }
 
 // judge finds the chances of the routes, and what a miss is expected to cost.
-func (d *doubts) judge(all []Route, failed *job.FailedBatch) error {
+func (d *doubts) judge(ctx context.Context, all []Route, failed *job.FailedBatch) error {
 	if d == nil || math.IsNaN(d.limits.Most) {
 		return nil
 	}
-	for i := range all {
+	return atOnce(ctx, len(all), func(i int) error {
 		r := &all[i]
-		if r.Run.Meets { // as a search does: given settings then read the same surfaces
-			if _, err := d.search.Chance(&r.Run, d.limits); err != nil {
-				return fmt.Errorf("%s: %w", r.ID, err)
-			}
-		}
-		chance, err := d.all.Chance(&r.Run, d.limits)
+		chance, err := d.chance(&r.Run)
 		if err != nil {
 			return fmt.Errorf("%s: %w", r.ID, err)
 		}
@@ -80,17 +113,17 @@ func (d *doubts) judge(all []Route, failed *job.FailedBatch) error {
 			perBatch := failed.Amount.Mul(decimal.NewFromFloat(1 - chance)).Round(2)
 			r.Miss = &Miss{PerBatch: perBatch, PerLitre: perBatch.DivRound(decimal.NewFromFloat(r.Run.LitresDelivered), 6)}
 		}
-	}
-	return nil
+		return nil
+	})
 }
 
 // spread fills in the ranges of the routes.
-func (d *doubts) spread(l *Lot) error {
+func (d *doubts) spread(ctx context.Context, l *Lot) error {
 	if d == nil {
 		return nil
 	}
 	outcomes := make([]*doubt.Outcome, len(l.Routes))
-	for i := range l.Routes {
+	err := atOnce(ctx, len(l.Routes), func(i int) error {
 		r := &l.Routes[i]
 		o, err := d.all.Through(&r.Run)
 		if err != nil {
@@ -105,10 +138,13 @@ func (d *doubts) spread(l *Lot) error {
 			band := spread.BandOf(o.CostPerLitre)
 			r.Range.CostPerLitre = &band
 		}
+		return nil
+	})
+	if err != nil {
+		return err
 	}
 	d.cheapest(l, outcomes)
-	d.movers(l, outcomes)
-	return nil
+	return d.movers(ctx, l, outcomes)
 }
 
 // capped shows a draw in which a route fails as a lot that is as wet as it came.
@@ -156,14 +192,14 @@ const (
 
 // movers ranks what moves the results of each route, and for the lot what moves
 // those of the best.
-func (d *doubts) movers(l *Lot, outcomes []*doubt.Outcome) {
+func (d *doubts) movers(ctx context.Context, l *Lot, outcomes []*doubt.Outcome) error {
 	inputs := d.all.Inputs()
 	ranks := make([]spread.Ranks, len(inputs))
 	for k := range inputs {
 		ranks[k] = spread.RanksOf(d.all.Column(inputs[k].Name))
 	}
-	for i, o := range outcomes {
-		r := &l.Routes[i]
+	err := atOnce(ctx, len(outcomes), func(i int) error {
+		r, o := &l.Routes[i], outcomes[i]
 		for _, result := range []struct {
 			of     string
 			values []float64
@@ -181,10 +217,12 @@ func (d *doubts) movers(l *Lot, outcomes []*doubt.Outcome) {
 			strongestFirst(all)
 			r.Range.Movers = append(r.Range.Movers, all[:min(len(all), mostMovers)]...)
 		}
-	}
+		return nil
+	})
 	if best := l.Best(); best != nil && best.Range != nil {
 		l.Doubts = largest(best.Range.Movers)
 	}
+	return err
 }
 
 func strongestFirst(all []Mover) {

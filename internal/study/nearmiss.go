@@ -91,7 +91,7 @@ const driest search.Objective = "water"
 
 // bestOf tunes every route of a case and takes the best that reaches the limit.
 func bestOf(k *routes.Case, like *search.Tuner, by search.Objective) (*routes.Run, error) {
-	t := &search.Tuner{Case: k, Book: like.Book, Objective: by, Site: like.Site}
+	t := &search.Tuner{Case: k, Book: like.Book, Objective: by, Site: like.Site, Stop: like.Stop}
 	if by == driest {
 		t.Objective = search.Cost
 	}

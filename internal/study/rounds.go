@@ -7,8 +7,6 @@ import (
 	"slices"
 	"strings"
 
-	"golang.org/x/sync/errgroup"
-
 	"parch/catalog"
 	"parch/internal/costs"
 )
@@ -30,8 +28,9 @@ func (r *Report) compareLots(ctx context.Context, c *catalog.Catalog, o Options)
 		return err
 	}
 	r.Book = book
+	all := make([]*work, len(r.Job.Lots))
 	for round := 1; ; round++ {
-		drawn, err := r.compareOnce(ctx, c, o)
+		err := r.compareOnce(ctx, c, o, all)
 		if err != nil {
 			return err
 		}
@@ -47,46 +46,40 @@ func (r *Report) compareLots(ctx context.Context, c *catalog.Catalog, o Options)
 			r.Warnings = append(slices.Clone(r.Warnings), "the choice between packs did not settle: prices are those of the last but one round")
 		}
 		r.namePacks()
-		return r.drawLots(ctx, drawn)
+		return r.drawLots(ctx, all)
 	}
 }
 
-// compareOnce compares all lots and keeps their draws.
-func (r *Report) compareOnce(ctx context.Context, c *catalog.Catalog, o Options) ([]*doubts, error) {
+// compareOnce compares all lots at the prices of the book. What does not go with
+// prices is kept from round to round.
+func (r *Report) compareOnce(ctx context.Context, c *catalog.Catalog, o Options, all []*work) error {
 	r.Lots = make([]Lot, len(r.Job.Lots))
-	drawn := make([]*doubts, len(r.Lots))
-	group, ctx := errgroup.WithContext(ctx)
-	group.SetLimit(8)
-	for i, lot := range r.Job.Lots {
-		group.Go(func() error {
-			l, d, err := compareLot(ctx, r.Job, lot, c, r.Book, o)
-			if err != nil {
-				return fmt.Errorf("lot %q: %w", lot.Name, err)
-			}
-			r.Lots[i], drawn[i] = l, d
-			o.meter.step()
-			return nil
-		})
-	}
-	return drawn, group.Wait()
+	return atOnce(ctx, len(r.Lots), func(i int) (err error) {
+		lot := r.Job.Lots[i]
+		if all[i] == nil {
+			all[i], err = newWork(ctx, r.Job, lot, c, r.Book, o)
+		}
+		if err == nil {
+			r.Lots[i], err = all[i].compare(ctx, r.Book, o)
+		}
+		if err != nil {
+			return fmt.Errorf("lot %q: %w", lot.Name, err)
+		}
+		o.meter.step()
+		return nil
+	})
 }
 
-// drawLots fills in the ranges of all lots.
-func (r *Report) drawLots(ctx context.Context, drawn []*doubts) error {
-	group, ctx := errgroup.WithContext(ctx)
-	group.SetLimit(8)
-	for i, d := range drawn {
-		group.Go(func() error {
-			if err := ctx.Err(); err != nil {
-				return err
-			}
-			if err := d.spread(&r.Lots[i]); err != nil {
-				return fmt.Errorf("lot %q: %w", r.Lots[i].Job.Name, err)
-			}
-			return nil
-		})
+// drawLots fills in the ranges of all lots, and lets go of their draws.
+func (r *Report) drawLots(ctx context.Context, all []*work) error {
+	for i, w := range all {
+		w.k.Forget()
+		if err := w.drawn.spread(ctx, &r.Lots[i]); err != nil {
+			return fmt.Errorf("lot %q: %w", r.Lots[i].Job.Name, err)
+		}
+		all[i] = nil
 	}
-	return group.Wait()
+	return nil
 }
 
 // pin sets the prices to the packs that an earlier run's settings name.
