@@ -25,6 +25,8 @@ var practiceKeys = map[string]quantity.Dimension{
 	"cooling-flow-minimum":  quantity.Flow,
 	"cooling-rise":          quantity.TemperatureDifference,
 	"vapour-loss-per-day":   quantity.Share,
+	"coolant-tap":           quantity.Temperature,
+	"heat-up-maximum":       quantity.Time,
 	"still-fill":            quantity.Share,
 	"settle-time":           quantity.Time,
 	"settle-attended":       quantity.Time,

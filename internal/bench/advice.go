@@ -24,8 +24,8 @@ func (a *Answer) advise() {
 		a.adviseColumn()
 	case steps.Salt:
 		a.adviseSalt()
-	case steps.Trap:
-		a.adviseTrap()
+	case steps.Trap, steps.Forerun:
+		a.adviseBoiling()
 	case steps.Reactive:
 		a.adviseReactive()
 	}
@@ -124,7 +124,7 @@ func (a *Answer) takenApart() string {
 
 func (a *Answer) asked() routes.Asked {
 	q := a.Question
-	return routes.Asked{Stage: routes.Stage{Kind: a.Kind, Agent: a.Agent}, Goal: q.Goal, DoseKgPerM3: q.DoseKgPerM3, TimeS: q.TimeS, Stirred: q.Stirred, Powder: q.Powder, Charges: q.Charges, ResidualLow: q.Activation.Low, ResidualHigh: q.Activation.High}
+	return routes.Asked{Stage: q.stage(), Stages: q.Stages, Goal: q.Goal, DoseKgPerM3: q.DoseKgPerM3, TimeS: q.TimeS, Stirred: q.Stirred, Powder: q.Powder, Charges: q.Charges, ResidualLow: q.Activation.Low, ResidualHigh: q.Activation.High}
 }
 
 // ignitionMarginK is kept between an oven and the autoignition temperature of
@@ -170,18 +170,6 @@ func (a *Answer) adviseSalt() {
 			a.tell("measured", "%s (%s): left %s [%s, %s]", a.Question.Solvent.Name, r.How, r.Water.Text, r.Water.Source, r.Water.Confidence)
 		}
 	}
-}
-
-func (a *Answer) adviseTrap() {
-	charges := a.Figure("still charges")
-	a.tell("receiver", "should show about %s mL of aqueous layer%s; drained %s",
-		quantity.Significant(a.Figure("aqueous layer, each charge"), 3), ofEach(charges), times(a.Figure("drainings, each charge")))
-	proved := steps.ProvedByReading(a.In.MassKg() / charges)
-	a.tell("reading", "repeatable to 0.1 mL, which is %s in this charge: a smaller content cannot be told from the receiver, only by a test", quantity.FormatWater(proved))
-	a.tell("boiling", "%s h to heat up, then %s h of reflux%s; the pot boils at %s °C at the start",
-		quantity.Significant(a.Figure("heat-up, each charge"), 3), quantity.Significant(a.Figure("reflux, each charge"), 3), ofEach(charges),
-		quantity.Significant(a.Figure("boiling temperature at the start"), 4))
-	a.tell("returns", "the %s layer goes back to the pot, the aqueous one is kept", a.Case.Trap.Floor.Return)
 }
 
 func ofEach(charges float64) string {

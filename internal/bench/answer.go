@@ -46,16 +46,13 @@ func Ask(c *catalog.Catalog, q *Question) (*Answer, error) {
 	if err != nil {
 		return nil, err
 	}
-	stage := routes.Stage{Kind: q.Kind}
-	if q.Agent != nil {
-		stage.Agent = q.Agent.Key
-	}
+	stage := q.stage()
 	if refusal := refuse(k, q, stage); refusal != nil {
 		return nil, refusal
 	}
 	a := &Answer{Question: q, Case: k, Single: routes.Single{Outcome: steps.Outcome{Kind: stage.Kind, Agent: stage.Agent}}}
 	if a.Single, err = k.Single(a.asked()); err != nil {
-		return nil, explained(q, err)
+		return nil, explained(k, q, err)
 	}
 	var ofLot []string
 	a.Cautions, ofLot = study.Remarks(k, routes.Route{stage})
@@ -77,7 +74,8 @@ func newCase(c *catalog.Catalog, q *Question) (*routes.Case, error) {
 		KarlFischer: "coulometric", Cooling: job.Tap,
 	}}
 	lot := job.Lot{
-		Name: q.Solvent.Name, Solvent: q.Solvent.Key, BatchM3: q.VolumeM3, BatchesPerYear: 1, Water: q.Water, FreeWaterM3: q.FreeWaterM3,
+		Reclaimed: heated(q.Kind), // it may be: nothing is known of the lot
+		Name:      q.Solvent.Name, Solvent: q.Solvent.Key, BatchM3: q.VolumeM3, BatchesPerYear: 1, Water: q.Water, FreeWaterM3: q.FreeWaterM3,
 		Target: q.Goal, HeaterW: q.HeaterW, VesselHeightM: q.HeightM,
 		SieveHistory: q.Activation.Key, SieveHistoryK: q.Activation.OvenK, ResidualLoading: q.Activation.KgPerKg,
 	}
@@ -86,6 +84,9 @@ func newCase(c *catalog.Catalog, q *Question) (*routes.Case, error) {
 	}
 	if given(q.PeroxideKgPerM3) {
 		lot.Peroxide = &job.Peroxide{ReadingKgPerM3: q.PeroxideKgPerM3, Date: undated}
+	}
+	if q.Carrier != nil {
+		j.Accept.Carriers = []string{q.Carrier.Key}
 	}
 	if q.Agent != nil {
 		if v, ok := c.Verdict(q.Solvent, q.Agent.Key); ok && v.Allowed() {
@@ -100,6 +101,9 @@ func refuse(k *routes.Case, q *Question, stage routes.Stage) error {
 		if v, ok := k.Catalog.Verdict(q.Solvent, q.Agent.Key); !ok || !v.Allowed() {
 			return forbidden(q, v, ok)
 		}
+	}
+	if refusal := peroxidesOfCarrier(k, q); refusal != nil {
+		return refusal
 	}
 	reason, source := k.Refused(stage)
 	switch {
@@ -130,8 +134,10 @@ func forbidden(q *Question, v catalog.Verdict, known bool) error {
 }
 
 // explained tells what has no physical sense from what physics refuses.
-func explained(q *Question, err error) error {
+func explained(k *routes.Case, q *Question, err error) error {
 	switch {
+	case errors.Is(err, routes.ErrWasteful):
+		return &Refusal{Reason: err.Error(), Hint: lessWasteful(k, q)}
 	case errors.Is(err, steps.ErrNoSense), errors.Is(err, routes.ErrAsked), errors.Is(err, steps.ErrNoColumn):
 		return &Mistake{Message: err.Error()}
 	case errors.Is(err, steps.ErrPreDry):
@@ -144,6 +150,9 @@ func explained(q *Question, err error) error {
 
 // Missed says that a step ends above what was asked of it, and why, or nothing.
 func (a *Answer) Missed() string {
+	if limit := a.Case.Catalog.Practice["carrier-limit"].SI; a.Out.Carrier() > limit*(1+1e-3) {
+		return fmt.Sprintf("%s of %s is left in the product, the limit is %s", quantity.FormatWater(a.Out.Carrier()), a.Carrier, quantity.FormatWater(limit))
+	}
 	if !given(a.Question.Goal) || a.Out.Water() <= a.Question.Goal*(1+1e-6) {
 		return ""
 	}

@@ -31,12 +31,14 @@ var typed = map[string][]string{
 	"height":      {"8 cm", "5 m"},
 	"activated":   {"300 C", "300 C closed hot", "opened-tin", "150 C, left open, 400 d", "20 C vacuum 1 Pa", "residual 1.5 g/100 g", "residual 0 g/100 g, 572 F", "residual 1", "650 C closed hot", ","},
 	"reagent":     {"0.5 mol", "0 mol"},
+	"carrier":     {"toluene", "cyclohexane", "DCM", "benzene", "mtbe", "water"},
+	"stages":      {"0", "3", "6", "20", "21", "-1"},
 	"charges":     {"1", "2", "5", "0", "many"},
 }
 
 var agents = map[steps.Kind][]string{
 	steps.Soak: {"sieve-3a", "silica-gel"}, steps.Column: {"sieve-4a", "alumina"}, steps.Salt: {"magnesium-sulfate", "sodium-sulfate"},
-	steps.Reactive: {"calcium oxide", "calcium-hydride"}, steps.Trap: {"gold"}, steps.Settle: {"sodium"},
+	steps.Reactive: {"calcium oxide", "calcium-hydride"}, steps.Trap: {"gold"}, steps.Forerun: {"sodium"}, steps.Settle: {"sodium"},
 }
 
 // Any question is answered with finite numbers, refused with a reason or said to
@@ -75,10 +77,13 @@ func TestAnyQuestion(t *testing.T) {
 			return
 		}
 		answered++
-		for _, x := range []float64{a.In.Water(), a.Out.Water(), a.Floor, a.HoursTotal, a.HoursAttended, a.EnergyKWh, a.AgentKg, a.SolventLostL} {
+		for _, x := range []float64{a.In.Water(), a.Out.Water(), a.HoursTotal, a.HoursAttended, a.EnergyKWh, a.AgentKg, a.SolventLostL} {
 			if math.IsNaN(x) || math.IsInf(x, 0) || x < 0 {
 				rt.Fatalf("%v: %+v", flags, a.Outcome)
 			}
+		}
+		if boils := a.Kind == steps.Forerun || a.Carrier != ""; !boils && !(a.Floor >= 0) || math.IsInf(a.Floor, 0) { // those may have no floor
+			rt.Fatalf("%v: a floor of %g", flags, a.Floor)
 		}
 		for _, advice := range a.Advice {
 			if strings.Contains(advice.Text, "NaN") || strings.Contains(advice.Text, "Inf") || strings.Contains(advice.Text, "%!") {

@@ -45,6 +45,9 @@ func (a *Answer) cite() {
 	case steps.Trap:
 		a.restsOnSolubility()
 		a.restsOnTrap()
+		a.restsOnCarrier()
+	case steps.Forerun:
+		a.restsOnForerun()
 	case steps.Soak, steps.Column:
 		a.restsOnSorbent()
 	case steps.Salt:

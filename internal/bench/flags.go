@@ -20,7 +20,8 @@ var common = []string{"solvent", "water", "volume", "temperature", "reagent"}
 
 var uses = map[steps.Kind]use{
 	steps.Settle:   {takes: []string{"free-water"}},
-	steps.Trap:     {takes: []string{"to", "free-water", "power", "receiver", "pressure", "peroxide"}},
+	steps.Trap:     {takes: []string{"to", "free-water", "power", "receiver", "pressure", "peroxide", "hours", "carrier", "dose", "stages"}},
+	steps.Forerun:  {takes: []string{"to", "free-water", "power", "pressure", "peroxide", "stages"}},
 	steps.Salt:     {takes: []string{"agent", "to", "dose", "hours", "free-water"}, needs: []string{"agent"}, agents: []string{"salt"}},
 	steps.Soak:     {takes: []string{"agent", "to", "dose", "hours", "stirred", "activated", "height", "free-water", "charges", "powder"}, needs: []string{"agent"}, agents: []string{"sieve", "oxide"}},
 	steps.Column:   {takes: []string{"agent", "to", "dose", "activated"}, needs: []string{"agent"}, agents: []string{"sieve", "oxide"}},
@@ -28,10 +29,7 @@ var uses = map[steps.Kind]use{
 }
 
 // Kinds are the steps that can be asked for, in the order in which a lot meets them.
-var Kinds = []steps.Kind{steps.Settle, steps.Trap, steps.Salt, steps.Soak, steps.Column, steps.Reactive}
-
-// later are steps that are known and cannot be asked for yet.
-var later = []string{string(steps.Forerun), "carrier"}
+var Kinds = []steps.Kind{steps.Settle, steps.Trap, steps.Forerun, steps.Salt, steps.Soak, steps.Column, steps.Reactive}
 
 // kind finds the step, or says what may be asked for.
 func kind(typed string) (steps.Kind, error) {
@@ -42,8 +40,8 @@ func kind(typed string) (steps.Kind, error) {
 	switch word := strings.ToLower(strings.TrimSpace(typed)); {
 	case slices.Contains(known, word):
 		return steps.Kind(word), nil
-	case slices.Contains(later, word):
-		return "", &Mistake{fmt.Sprintf("the step %q is not available yet", word), "steps: " + strings.Join(known, ", ")}
+	case word == "carrier":
+		return "", &Mistake{`"carrier" is not a step`, "a carrier is boiled out under a trap: parch step trap --carrier C"}
 	}
 	hint := "steps: " + strings.Join(known, ", ")
 	if near := document.Nearest(typed, known); len(near) > 0 {
@@ -70,6 +68,13 @@ func (r *reader) fit() {
 	slices.Sort(odd)
 	for _, name := range odd {
 		r.mistake(fmt.Sprintf("--%s does not apply to %s%s", name, r.q.Kind, why(r.q.Kind, name)), "it takes --"+strings.Join(allowed, ", --"))
+	}
+	if _, carried := r.flags["carrier"]; r.q.Kind == steps.Trap && !carried {
+		for _, name := range []string{"dose", "stages"} {
+			if _, ok := r.flags[name]; ok {
+				r.mistake(fmt.Sprintf("--%s does not apply to trap without --carrier", name), "name the carrier with --carrier, or leave it out")
+			}
+		}
 	}
 	for _, name := range append([]string{"water"}, u.needs...) {
 		if _, ok := r.flags[name]; !ok {

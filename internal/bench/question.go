@@ -27,7 +27,9 @@ type Question struct {
 	Agent   *catalog.Agent // nil where the step takes none
 	Stirred bool
 	Powder  bool
-	Charges int // of sorbent, one after the other; 0 where the step takes none
+	Carrier *catalog.Solvent // of a trap, or nil
+	Stages  int              // of the column of a forerun, or of a trap with a carrier
+	Charges int              // of sorbent, one after the other; 0 where the step takes none
 
 	Water, Goal           float64 // kg/kg
 	VolumeM3, FreeWaterM3 float64

@@ -34,6 +34,8 @@ func Read(c *catalog.Catalog, req Request) (*Question, error) {
 	r.fit()
 	r.conditions()
 	r.agent()
+	r.carrier()
+	r.stages()
 	r.amounts()
 	if req.Solvent != nil {
 		r.contents()
@@ -103,6 +105,10 @@ func (r *reader) conditions() {
 	q := r.q
 	q.TempK = r.measure("temperature", quantity.Temperature, anyTemperature, r.cat.Practice["site-room"].SI)
 	q.ReceiverK = r.measure("receiver", quantity.Temperature, anyReceiver, r.cat.Practice["site-receiver"].SI)
+	if tap := r.cat.Practice["coolant-tap"]; q.ReceiverK < tap.SI-1e-9 {
+		r.mistake(fmt.Sprintf("--receiver: %s is colder than the cooling water from the tap (%s)", quantity.Quote(r.flags["receiver"]), quantity.FormatTemperature(tap.SI)),
+			"where a chiller cools it, a job file says so: site: {receiver: 5 °C, cooling: chiller}")
+	}
 	q.PressurePa = r.measure("pressure", quantity.Pressure, anyPressure, r.cat.Practice["site-pressure"].SI)
 	q.HeaterW = r.measure("power", quantity.Power, anyPower, 0)
 	q.HeightM = r.measure("height", quantity.Length, anyHeight, 0)

@@ -19,6 +19,10 @@ func (a *Answer) warn(ofLot []string) {
 		a.warnSoak()
 	case steps.Column:
 		a.warnIsotherm()
+	case steps.Trap:
+		if carrier := a.Case.Catalog.Carriers[a.Carrier]; carrier != nil && carrier.ByName {
+			a.warning("%s: %s (%s)", a.Question.Carrier.Name, carrier.Reason, carrier.Confidence)
+		}
 	case steps.Salt:
 		if target := a.Question.Agent.Claim.Target; given(a.Question.Goal) && a.Question.Goal < target.SI {
 			a.warning("a salt is not the last step for a target under %s (%s): a sieve follows", target.Text, target.Confidence)

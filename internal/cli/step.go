@@ -17,7 +17,7 @@ func (p *program) step() *cli.Command {
 		Name:      "step",
 		Usage:     "answer one question at the bench: what one step does",
 		UsageText: "parch step KIND --solvent S --water W [flags]",
-		Description: "KIND is settle, trap, salt, soak, column or reactive. No job file and no prices. HISTORY is an\n" +
+		Description: "KIND is settle, trap, forerun, salt, soak, column or reactive. No job file and no prices. HISTORY is an\n" +
 			"oven's temperature with what was done after it (\"250 C, closed hot, 30 d\", \"200 C, vacuum 1 hPa\"),\n" +
 			"or a key of the catalog such as opened-tin.\n" +
 			"A soak takes two of --dose, --hours and --to; with --to alone it sizes overnight, 24 h and 72 h.\n" +
@@ -43,8 +43,8 @@ func (p *program) step() *cli.Command {
 			&cli.StringFlag{Name: "pressure", Usage: "pressure `P`, 1 to 110 kPa (default: the catalog's)"},
 			&cli.StringFlag{Name: "peroxide", Usage: "peroxide reading `C`, wanted before a peroxide former is heated"},
 			&cli.StringFlag{Name: "reagent", Usage: "amount `N` of a reagent in the lot: water in mol % of it"},
-			&cli.StringFlag{Name: "carrier", Usage: "not available yet"},
-			&cli.StringFlag{Name: "stages", Usage: "not available yet"},
+			&cli.StringFlag{Name: "carrier", Usage: "carrier `C` that boils the water out under a trap; --dose, where it is not chosen, is of it"},
+			&cli.StringFlag{Name: "stages", Usage: "equilibrium stages `N` of the column of a forerun, or of a trap with a carrier (default: 0, a simple still)"},
 			catalogFlag(),
 			onOff("json", "print JSON"),
 		},
@@ -61,9 +61,8 @@ func (p *program) runStep(c *cli.Context) error {
 	if err != nil {
 		return err
 	}
-	flags, err := flagsOfStep(c)
-	problems := []error{err}
-	request := bench.Request{Kind: kind, Flags: flags, Stirred: c.Bool("stirred"), Powder: c.Bool("powder")}
+	var problems []error
+	request := bench.Request{Kind: kind, Flags: flagsOfStep(c), Stirred: c.Bool("stirred"), Powder: c.Bool("powder")}
 	if c.IsSet("solvent") {
 		request.Solvent, err = findSolvent(cat, c.String("solvent"))
 		problems = append(problems, err)
@@ -81,21 +80,17 @@ func (p *program) runStep(c *cli.Context) error {
 	return p.showStep(c, answer)
 }
 
-// flagsOfStep are the flags that were given, by name. Carriers and columns of stages are to come.
-func flagsOfStep(c *cli.Context) (flags map[string]string, err error) {
+// flagsOfStep are the flags that were given, by name.
+func flagsOfStep(c *cli.Context) (flags map[string]string) {
 	flags = map[string]string{}
 	for _, f := range c.Command.Flags {
 		name := f.Names()[0]
 		if _, holdsOne := f.(*cli.StringFlag); !holdsOne || !c.IsSet(name) {
 			continue
 		}
-		if name == "carrier" || name == "stages" {
-			err = errors.Join(err, misused(fmt.Sprintf("--%s is not available yet", name), ""))
-			continue
-		}
 		flags[name] = c.String(name)
 	}
-	return flags, err
+	return flags
 }
 
 // mistakes are those of a request, as errors of the command line.

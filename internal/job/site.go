@@ -31,6 +31,7 @@ func (r *reader) site(n *document.Node) {
 		func(n *document.Node) string { return n.OneOf("coulometric", "volumetric") })
 	r.job.Site.Cooling = r.orWord(f.Get("cooling"), "site.cooling", Tap,
 		func(n *document.Node) string { return n.OneOf(Tap, Chiller, Loop) })
+	r.coolant(f.Get("receiver"))
 	r.waste(f)
 	if n := f.Get("failed batch"); n != nil {
 		r.job.Site.FailedBatch = r.failedBatch(n)
@@ -38,6 +39,14 @@ func (r *reader) site(n *document.Node) {
 	r.rate(f.Get("technician"), "technician", "hour")
 	r.rate(f.Get("electricity"), "electricity", "kwh")
 	r.rate(f.Get("cooling water"), "cooling-water", "m3")
+}
+
+// coolant refuses a receiver that is colder than the tap water that cools it.
+func (r *reader) coolant(receiver *document.Node) {
+	tap, site := r.cat.Practice["coolant-tap"], r.job.Site
+	if receiver != nil && site.Cooling == Tap && site.ReceiverK > 0 && site.ReceiverK < tap.SI-1e-9 {
+		receiver.Fail("%s is colder than the cooling water from the tap (%s); write cooling: chiller, or a receiver that is not", quantity.Quote(receiver.Text()), quantity.FormatTemperature(tap.SI))
+	}
 }
 
 // usualContainerKg is a waste can of 20 L of solvent (common practice, no source).

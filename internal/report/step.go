@@ -3,6 +3,7 @@ package report
 import (
 	"fmt"
 	"io"
+	"math"
 	"regexp"
 	"slices"
 	"strings"
@@ -27,6 +28,7 @@ func StepText(w io.Writer, a *bench.Answer) error {
 	p.stepResult(a)
 	p.sizes(a.Sizes, a.Question.Charges)
 	p.advice(a.Advice)
+	p.watch(a)
 	p.figures(&a.Outcome)
 	p.notes("Read as", a.Question.Notes)
 	p.notes("Warnings", a.Warnings)
@@ -101,6 +103,9 @@ func (p *page) stepResult(a *bench.Answer) {
 func floor(a *bench.Answer) string {
 	if q := a.Question; q.Agent != nil && q.Agent.Isotherm != nil && q.Activation.KgPerKg == 0 {
 		return "none: the sorbent is taken to be empty"
+	}
+	if math.IsNaN(a.Floor) {
+		return "none was met"
 	}
 	return quantity.FormatWater(a.Floor)
 }

@@ -70,10 +70,15 @@ func (c *Case) receiver(trap *steps.TrapEquilibrium, key string) (*catalog.Appar
 			return a, nil
 		}
 	}
-	if key != "" {
-		return nil, fmt.Errorf("%w: receiver %q does not return the %s layer", ErrSettings, key, trap.Floor.Return)
+	l := trap.Floor.Layers
+	needs := fmt.Sprintf("%s needs a %s return (organic layer %.0f, aqueous %.0f kg/m3)", c.Solvent.Name, trap.Floor.Return, l.OrganicKgPerM3, l.AqueousKgPerM3)
+	if a := c.Catalog.Apparatus[key]; a != nil && a.Kind == "receiver" {
+		return nil, fmt.Errorf("%w: %s, %s returns the %s layer", ErrSettings, needs, key, a.Returns)
 	}
-	return nil, fmt.Errorf("no receiver returns the %s layer", trap.Floor.Return)
+	if key != "" {
+		return nil, fmt.Errorf("%w: %q is not a receiver of the catalog", ErrSettings, key)
+	}
+	return nil, fmt.Errorf("%s, and no receiver of the catalog returns that layer", needs)
 }
 
 // Receivers are the keys of the receivers that a trap on this lot may have. What

@@ -2,8 +2,10 @@ package routes
 
 import (
 	"fmt"
+	"math"
 
 	"parch/catalog"
+	"parch/internal/job"
 	"parch/internal/steps"
 )
 
@@ -27,12 +29,8 @@ func (c *Case) runForerun(lot steps.Lot, goal float64, choice choice) (steps.Out
 	if column := c.columnOf(choice.stages); column != nil {
 		o.Apparatus = column.Key
 	}
-	lostKg := 0.0
-	for _, l := range o.Losses {
-		lostKg += l.SolventKg
-	}
-	if lost := lostKg / lot.SolventKg; lost > wastefulForerun {
-		return o, refusal{fmt.Errorf("a forerun over %d stages would take %.0f %% of the lot with it", choice.stages, 100*lost)}
+	if lost := o.Balance.SolventRemovedKg / lot.SolventKg; lost > wastefulForerun {
+		return o, wasteful{lost, fmt.Errorf("a forerun over %d stages would take %.0f %% of the lot with it", choice.stages, 100*lost)}
 	}
 	return o, nil
 }
@@ -40,7 +38,7 @@ func (c *Case) runForerun(lot steps.Lot, goal float64, choice choice) (steps.Out
 func (c *Case) forerunRig(stages int) steps.ForerunRig {
 	still, charges := c.Still()
 	rig := steps.ForerunRig{
-		HeaterW: c.heaterW(still), HeatShare: c.practice("heat-share"), RoomK: c.Job.Site.RoomK, Charges: charges, Stages: stages,
+		HeaterW: c.heaterW(still), HeatShare: c.practice("heat-share"), RoomK: c.Job.Site.RoomK, CoolantK: c.coolantK(), Charges: charges, Stages: stages,
 	}
 	if stages > 0 {
 		rig.RefluxRatio = c.practice("forerun-reflux")
@@ -48,11 +46,21 @@ func (c *Case) forerunRig(stages int) steps.ForerunRig {
 	return rig
 }
 
+// coolantK is the temperature of the cooling water: of the tap, or as cold as a
+// chiller or a loop keeps the receiver.
+func (c *Case) coolantK() float64 {
+	if c.Job.Site.Cooling == job.Tap {
+		return math.Min(c.practice("coolant-tap"), c.Job.Site.ReceiverK)
+	}
+	return c.Job.Site.ReceiverK
+}
+
 func (c *Case) forerunRules(choice choice) steps.ForerunRules {
 	rules := steps.ForerunRules{
 		HeelShare: c.practice("forerun-heel"), LowestOutlet: c.practice("trap-outlet-minimum"),
 		SetUpS: c.practice("forerun-attended"), AttendedShare: c.practice("trap-attended-share"), ShutDownS: c.practice("trap-shutdown"),
 		VapourLossPerDay: c.practice("vapour-loss-per-day"), CoolingFlowM3S: c.practice("cooling-flow"), CoolingRiseK: c.practice("cooling-rise"),
+		LongestHeatUpS: c.practice("heat-up-maximum"),
 	}
 	if choice.stages > 0 {
 		rules.SettleColumnS = c.practice("forerun-column")

@@ -173,6 +173,7 @@ func (c *Case) trapRules() steps.TrapRules {
 		ShutDownS: c.practice("trap-shutdown"), DrainingS: c.practice("draining-time"),
 		VapourLossPerDay: c.practice("vapour-loss-per-day"),
 		CoolingFlowM3S:   c.practice("cooling-flow"), CoolingRiseK: c.practice("cooling-rise"),
+		LongestHeatUpS: c.practice("heat-up-maximum"),
 	}
 }
 
@@ -226,6 +227,7 @@ func (c *Case) boilOut(lot steps.Lot, goal float64, choice choice) (steps.Outcom
 	if choice.goesOn {
 		rules.ShutDownS = 0
 	}
+	rules.LongestRefluxS = choice.longestS
 	o, err := steps.RunTrap(trap, lot, goal, steps.TrapRig{
 		HeaterW: c.heaterW(still), HeatShare: c.practice("heat-share"), Returns: receiver.Returns,
 		FillVolumeM3: receiver.FillVolume.SI, UsableVolumeM3: receiver.Volume.SI,

@@ -20,6 +20,7 @@ type Asked struct {
 	Stirred     bool
 	Powder      bool // of a soak: not beads
 	Charges     int  // of a soak, one after the other, that make up the dose; 0: one
+	Stages      int  // of the column of a forerun, or of a trap with a carrier
 
 	ResidualLow, ResidualHigh float64 // kg/kg, the band of the lot's residual loading
 }
@@ -57,8 +58,9 @@ func (c *Case) Single(a Asked) (Single, error) {
 		s.Outcome, err = steps.RunSettle(c.Mixture, c.Feed, c.Job.Site.RoomK, c.settleRules())
 		c.bandOfSolubility(&s, func(factor float64) float64 { return s.Out.Water() * factor })
 	case steps.Trap:
-		s.Outcome, err = c.boilOut(c.Feed, orZero(a.Goal), choice{})
-		c.bandOfSolubility(&s, func(factor float64) float64 { return c.trapOutlet(orZero(a.Goal), factor) })
+		err = c.singleTrap(a, &s)
+	case steps.Forerun:
+		s.Outcome, err = c.runForerun(c.Feed, orZero(a.Goal), choice{stages: a.Stages})
 	case steps.Soak:
 		err = c.singleSoak(a, &s)
 	case steps.Column:
@@ -129,9 +131,4 @@ func (c *Case) bandOfSolubility(s *Single, outlet func(factor float64) float64) 
 	}
 	s.Low, s.High = math.Min(outlet(1/band), s.Out.Water()), math.Max(outlet(band), s.Out.Water())
 	s.Bands = append(s.Bands, fmt.Sprintf("published solubility, a factor of %.3g either way", band))
-}
-
-// trapOutlet is where a trap ends whose floor is off by a factor.
-func (c *Case) trapOutlet(goal, factor float64) float64 {
-	return steps.TrapOutlet(c.Feed.Water(), goal, c.Trap.Floor.Water*factor, c.practice("trap-outlet-minimum"))
 }

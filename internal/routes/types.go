@@ -70,6 +70,7 @@ type choice struct {
 	receiverC float64 // 0: the coldest in reach
 	dose      float64 // of a carrier, kg per kg of solvent
 	carrier   string  // that the trap before has left in the pot
+	longestS  float64 // of a trap, under reflux; 0: no limit
 }
 
 // at returns the choices of stage i.
@@ -135,6 +136,9 @@ type Settings struct {
 
 // ErrRefused means that the physics refuses a step of a route on this lot.
 var ErrRefused = errors.New("refused")
+
+// ErrWasteful means that a step would take most of the lot with the water.
+var ErrWasteful = errors.New("wasteful")
 
 // ErrSettings means that settings do not belong to a route.
 var ErrSettings = errors.New("settings do not fit")

@@ -159,15 +159,15 @@ var CarrierDoses = []float64{0.05, 0.1, 0.15, 0.2, 0.3, 0.45, 0.7, 1}
 // ChooseCarrierDose runs the plan with each of CarrierDoses and returns the
 // outcome with the least solvent and carrier lost of those that reach the goal
 // and the carrier limit, else the driest of those that reach the carrier limit,
-// else the driest.
-func ChooseCarrierDose(eq *CarrierEquilibrium, feed Lot, plan CarrierPlan, rig TrapRig, rules TrapRules) (Outcome, error) {
+// else the driest. A larger dose may ask for a larger still: rigFor a dose (kg).
+func ChooseCarrierDose(eq *CarrierEquilibrium, feed Lot, plan CarrierPlan, rigFor func(doseKg float64) TrapRig, rules TrapRules) (Outcome, error) {
 	var best Outcome
 	var bestMerit [3]float64
 	var failed error
 	found := false
 	for _, share := range CarrierDoses {
 		plan.DoseKg = share * feed.SolventKg
-		o, err := RunCarrier(eq, feed, plan, rig, rules)
+		o, err := RunCarrier(eq, feed, plan, rigFor(plan.DoseKg), rules)
 		if err != nil {
 			failed = err
 			continue

@@ -32,7 +32,7 @@ func (r *refluxing) outcome(feed Lot) Outcome {
 		HoursAttended: (r.rules.SetUpS + n*(hotS*r.rules.AttendedShare+shutDownS+drainings*r.rules.DrainingS)) / secondsPerHour,
 		EnergyKWh:     n * r.rig.HeaterW * hotS / joulePerKWh,
 		Condenser:     condense(r.rig.HeaterW, r.rig.HeatShare, r.rules.CoolingFlowM3S, r.rules.CoolingRiseK),
-		Course:        r.course, Warnings: r.warnings,
+		Course:        r.course, Warnings: r.warnings, Returns: string(r.returns),
 	}
 	if r.why == AtFloor && r.half != stripOnly {
 		o.Floor = r.dryness(&r.trapped)
@@ -109,6 +109,7 @@ func (r *refluxing) figures(o *Outcome, heatUpS, refluxS, stripS, drainings floa
 		{"vapour boiled up, each charge", "kg", r.s.boiledKg},
 		{"aqueous layer, each charge", "mL", r.aqueousM3() * 1e6},
 		{"drainings, each charge", "", drainings},
+		{holdsOfWater, "mL", r.rig.UsableVolumeM3 * 1e6},
 		{"water in the pot when the trap stops", "mg/kg", r.dryness(&r.trapped) * mgPerKg},
 		{"carrier left in the product", "mg/kg", o.Out.Carrier() * mgPerKg},
 		{"carrier in the aqueous layer", "kg", float64(r.rig.Charges) * r.kg(r.s.aqueous[inCarrier], inCarrier)},

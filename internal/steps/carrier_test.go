@@ -398,7 +398,7 @@ func TestChooseCarrierDose(t *testing.T) {
 	eq := carrierEquilibrium(t, "n-n-dimethylformamide", "toluene", 20)
 	feed := carrierLot(eq, 10, 0.02)
 	plan := withColumn(feed, 0, 5)
-	best, err := steps.ChooseCarrierDose(eq, feed, plan, rig("either"), rules)
+	best, err := steps.ChooseCarrierDose(eq, feed, plan, func(float64) steps.TrapRig { return rig("either") }, rules)
 	if err != nil {
 		t.Fatal(err)
 	}

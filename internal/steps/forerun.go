@@ -226,8 +226,10 @@ func (d *drawing) checkTemperatures() error {
 	if d.startK <= d.rig.RoomK {
 		return fmt.Errorf("%w: %s boils at %.1f °C at %.4g kPa, not above the room's %.1f °C", ErrNoForerun, d.m.Solvent.Key, d.startK-273.15, kPa, d.rig.RoomK-273.15)
 	}
-	if d.rig.CoolantK > 0 && d.at.headK <= d.rig.CoolantK {
-		return fmt.Errorf("%w: the vapour condenses at %.1f °C at %.4g kPa, the coolant is at %.1f °C", ErrNoForerun, d.at.headK-273.15, kPa, d.rig.CoolantK-273.15)
+	warmed := d.rig.CoolantK + condense(d.rig.HeaterW, d.rig.HeatShare, d.rules.CoolingFlowM3S, d.rules.CoolingRiseK).RunRiseK
+	if d.rig.CoolantK > 0 && d.at.headK <= warmed {
+		return fmt.Errorf("%w: the vapour condenses at %.1f °C at %.4g kPa, the coolant comes in at %.1f °C and leaves at %.1f °C",
+			ErrNoForerun, d.at.headK-273.15, kPa, d.rig.CoolantK-273.15, warmed-273.15)
 	}
 	if hottest := math.Max(d.startK, d.eq.DryK); d.rig.HighestPotK > 0 && hottest > d.rig.HighestPotK {
 		return fmt.Errorf("%w: the pot reaches %.1f °C at %.4g kPa, the limit is %.1f °C; dry %s boils there at %.3g kPa",
@@ -238,16 +240,20 @@ func (d *drawing) checkTemperatures() error {
 
 func (d *drawing) netW() float64 { return d.rig.HeaterW * d.rig.HeatShare }
 
-// reached words the reason for stopping.
+// reached words the reason for stopping, and says which of the two is the product.
 func (d *drawing) reached(goal float64) string {
+	product := "; the pot is the product"
+	if d.overhead {
+		product = "; the distillate is the product, the wet heel stays behind"
+	}
 	switch d.why {
 	case AtHeel:
-		return fmt.Sprintf("heel: %.0f %% of the charge stays in the pot", 100*d.rules.HeelShare)
+		return fmt.Sprintf("heel: %.0f %% of the charge stays in the pot", 100*d.rules.HeelShare) + product
 	case AtFloor:
-		return fmt.Sprintf("floor: even the first distillate holds %s", quantity.FormatWater(d.m.MassFraction(d.firstY)))
+		return fmt.Sprintf("floor: even the first distillate holds %s", quantity.FormatWater(d.m.MassFraction(d.firstY))) + product
 	case AtPractice:
-		return fmt.Sprintf("practical limit: moist air keeps an outlet at %s or more", quantity.FormatWater(d.rules.LowestOutlet))
+		return fmt.Sprintf("practical limit: moist air keeps an outlet at %s or more", quantity.FormatWater(d.rules.LowestOutlet)) + product
 	default:
-		return fmt.Sprintf("hand-over at %s reached", quantity.FormatWater(goal))
+		return fmt.Sprintf("hand-over at %s reached", quantity.FormatWater(goal)) + product
 	}
 }

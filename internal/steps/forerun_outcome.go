@@ -27,7 +27,7 @@ func (d *drawing) outcome(feed Lot, goal float64) Outcome {
 		HoursAttended: (d.rules.SetUpS + n*(hotS*d.rules.AttendedShare+d.rules.ShutDownS)) / secondsPerHour,
 		EnergyKWh:     n * d.rig.HeaterW * hotS / joulePerKWh,
 		Condenser:     condense(d.rig.HeaterW, d.rig.HeatShare, d.rules.CoolingFlowM3S, d.rules.CoolingRiseK),
-		Course:        d.course,
+		Course:        d.course, Overhead: d.overhead,
 	}
 	o.CoolingWaterL = n * o.Condenser.RunM3PerS * (settleS + drawS) * litrePerM3
 	if d.overhead {

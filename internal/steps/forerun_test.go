@@ -84,6 +84,29 @@ func TestIdealForerun(t *testing.T) {
 	}
 }
 
+// The first drop off a column of n stages at total reflux, with a constant
+// volatility a (Fenske, Ind. Eng. Chem. 24 (1932) 482). Needs no data.
+//
+//	y/(1 - y) = a^(n+1) x/(1 - x)
+func TestFirstDropFollowsFenske(t *testing.T) {
+	for _, c := range []struct {
+		volatility, x float64
+		stages        int
+	}{{2.5, 0.2, 0}, {1.5, 0.1, 1}, {1.5, 0.01, 4}, {1.1, 0.3, 10}, {1.2, 1e-4, 20}, {3, 1e-6, 7}} {
+		m := ideal(c.volatility)
+		want := math.Pow(c.volatility, float64(c.stages+1)) * c.x / (1 - c.x)
+		rules := drawingRules
+		rules.HeelShare = 1 - 1e-4*c.x*(1+want)/want // of the water, a ten-thousandth is drawn
+		o, err := steps.RunForerun(boiler(t, m, atmospherePa), molar(m, c.x), 1e-9, still(c.stages), rules)
+		if err != nil {
+			t.Errorf("%+v: %v", c, err)
+			continue
+		}
+		drop := m.MoleFraction(o.Figure("water in what is drawn off") / 100)
+		near(t, "ratio in the first drop", drop/(1-drop), want, 0.001)
+	}
+}
+
 // The distillate of an ideal mixture whose water is the heavy one, by the same form.
 func TestIdealProductOverhead(t *testing.T) {
 	m := ideal(1 / 3.0)

@@ -16,6 +16,7 @@ type TrapRules struct {
 	Efficiency       float64 // water removed per vapour against the ideal, below EfficiencyBelow
 	EfficiencyBelow  float64 // kg/kg
 	ShortestRefluxS  float64
+	LongestRefluxS   float64 // 0: no limit
 	SetUpS           float64
 	AttendedShare    float64 // of the hours at the heater
 	ShutDownS        float64 // cool and transfer, each charge
@@ -84,19 +85,57 @@ func RunTrap(eq *TrapEquilibrium, feed Lot, goal float64, rig TrapRig, rules Tra
 	if rig.Returns != "either" && rig.Returns != string(eq.Floor.Return) {
 		return Outcome{}, fmt.Errorf("%w: %s needs a %s return, the receiver returns the %s layer", ErrNoTrap, eq.Mixture.Solvent.Key, eq.Floor.Return, rig.Returns)
 	}
+	if rules.LongestRefluxS > 0 && rules.LongestRefluxS < rules.ShortestRefluxS {
+		return Outcome{}, fmt.Errorf("%w: %.3g h of reflux; a trap is run for %.3g h at least", ErrNoTrap, rules.LongestRefluxS/secondsPerHour, rules.ShortestRefluxS/secondsPerHour)
+	}
 	reach, why := trapReach(feed.Water(), goal, eq.Floor.Water, rules.LowestOutlet)
-	b := boiling{eq: eq, m: eq.Mixture, rig: rig, rules: rules}
-	b.lowest = math.Min(feed.Water(), math.Max(rules.LowestOutlet, floorMargin*eq.Floor.Water))
-	if err := b.start(feed); err != nil {
+	b, err := boilTo(eq, feed, reach, rig, rules)
+	if err != nil {
 		return Outcome{}, err
 	}
-	if err := b.fill(); err != nil {
-		return Outcome{}, err
-	}
-	if err := b.reflux(reach); err != nil {
-		return Outcome{}, err
+	if longest := rules.LongestRefluxS; longest > 0 && b.boilUpJ > longest*b.netW() {
+		if b, err = boilFor(eq, feed, reach, rig, rules); err != nil {
+			return Outcome{}, err
+		}
+		why = AtTime
 	}
 	return b.outcome(feed, goal, why), nil
+}
+
+// boilTo takes one charge down to the water fraction reach (kg/kg).
+func boilTo(eq *TrapEquilibrium, feed Lot, reach float64, rig TrapRig, rules TrapRules) (*boiling, error) {
+	b := &boiling{eq: eq, m: eq.Mixture, rig: rig, rules: rules}
+	b.lowest = math.Min(feed.Water(), math.Max(rules.LowestOutlet, floorMargin*eq.Floor.Water))
+	if err := b.start(feed); err != nil {
+		return nil, err
+	}
+	if err := b.fill(); err != nil {
+		return nil, err
+	}
+	return b, b.reflux(reach)
+}
+
+// boilFor takes one charge as far as it comes in the longest time of the rules,
+// short of the water fraction reach (kg/kg) that takes longer.
+func boilFor(eq *TrapEquilibrium, feed Lot, reach float64, rig TrapRig, rules TrapRules) (*boiling, error) {
+	longestS := rules.LongestRefluxS
+	b, err := boilTo(eq, feed, 1, rig, rules)
+	if err != nil {
+		return nil, err
+	}
+	if fillS := b.boilUpJ / b.netW(); fillS >= longestS {
+		return nil, fmt.Errorf("%w: in %.3g h of reflux the receiver is not full, which takes %.3g h", ErrNoTrap, longestS/secondsPerHour, fillS/secondsPerHour)
+	}
+	lnReach, err := thermo.Brent(func(ln float64) float64 {
+		if b, err = boilTo(eq, feed, math.Exp(ln), rig, rules); err != nil {
+			return math.NaN()
+		}
+		return b.boilUpJ/b.netW()/longestS - 1
+	}, math.Log(reach), math.Log(b.m.MassFraction(b.fraction())), 1e-10)
+	if err != nil {
+		return nil, err
+	}
+	return boilTo(eq, feed, math.Exp(lnReach), rig, rules)
 }
 
 // trapReach is the water a trap is run to, and why it stops there.
@@ -120,6 +159,7 @@ type boiling struct {
 
 	lowest           float64 // kg/kg, the least water a trap can claim
 	water, solvent   float64 // mol in the pot
+	charged          float64 // solvent at the start, mol
 	startK           float64
 	heatUpJ, boilUpJ float64
 	warmingJ         float64 // of the pot as its boiling point rises, part of boilUpJ
@@ -136,6 +176,7 @@ func (b *boiling) start(feed Lot) error {
 	charges := float64(b.rig.Charges)
 	b.water = feed.WaterKg / charges / b.m.Water.MolarMassKgPerMol
 	b.solvent = feed.SolventKg / charges / b.m.Solvent.MolarMassKgPerMol
+	b.charged = b.solvent
 	az := b.eq.Azeotrope
 	if az.Kind == thermo.Heterogeneous && b.fraction() > az.Layers.XAqueous {
 		return fmt.Errorf("%w: at %.3g %% water the pot is water with a little %s; settle it first", ErrNoTrap, 100*feed.Water(), b.m.Solvent.Key)
@@ -251,7 +292,7 @@ func (b *boiling) note() {
 	x := b.fraction()
 	p := Point{
 		Hours: (b.heatUpJ + b.boilUpJ) / b.netW() / secondsPerHour, Water: b.m.MassFraction(x),
-		BoiledKg: b.boiledKg, AqueousM3: b.aqueousM3(),
+		BoiledKg: b.boiledKg, AqueousM3: b.aqueousM3(), LostShare: math.Max(0, 1-b.solvent/b.charged),
 	}
 	if v, err := b.vapour(x); err == nil {
 		p.PotK, p.HeadK = v.TempK, v.TempK

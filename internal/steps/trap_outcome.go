@@ -40,6 +40,7 @@ func (b *boiling) outcome(feed Lot, goal float64, why Stop) Outcome {
 		EnergyKWh:     n * b.rig.HeaterW * hotS / joulePerKWh,
 		Condenser:     condense(b.rig.HeaterW, b.rig.HeatShare, b.rules.CoolingFlowM3S, b.rules.CoolingRiseK),
 		Course:        b.course,
+		Returns:       string(b.eq.Floor.Return),
 	}
 	o.CoolingWaterL = n * o.Condenser.RunM3PerS * refluxS * litrePerM3
 	o.Losses = []Loss{
@@ -64,6 +65,7 @@ func (b *boiling) outcome(feed Lot, goal float64, why Stop) Outcome {
 		{"vapour as a share of the charge", "%", 100 * b.boiledKg * n / feed.MassKg()},
 		{"aqueous layer, each charge", "mL", aqueousM3 * 1e6},
 		{"drainings, each charge", "", drainings},
+		{holdsOfWater, "mL", b.rig.UsableVolumeM3 * 1e6},
 		{"floor of the pot", "mg/kg", b.eq.Floor.Water * mgPerKg},
 	}
 	return o
@@ -102,6 +104,8 @@ func (b *boiling) reason(goal float64, why Stop) string {
 	case AtFloor:
 		return fmt.Sprintf("floor: the condensate of a pot at %s no longer splits at %.0f °C; run to %.0f %% above it",
 			quantity.FormatWater(b.eq.Floor.Water), b.eq.ReceiverK-273.15, 100*(floorMargin-1))
+	case AtTime:
+		return fmt.Sprintf("time: %.3g h of reflux leave %s in the pot", b.rules.LongestRefluxS/secondsPerHour, quantity.FormatWater(b.m.MassFraction(b.fraction())))
 	case AtPractice:
 		return fmt.Sprintf("practical limit: droplets and moist air keep a trap's outlet at %s or more, whatever its floor of %s",
 			quantity.FormatWater(b.rules.LowestOutlet), quantity.FormatWater(b.eq.Floor.Water))

@@ -126,7 +126,7 @@ type Point struct {
 	BoiledKg  float64 // trap: vapour boiled up so far
 	AqueousM3 float64 // trap: aqueous layer collected so far
 	DrawnM3   float64 // forerun: distillate drawn off so far
-	LostShare float64 // forerun: of the solvent, drawn off so far
+	LostShare float64 // of the solvent, out of the pot so far, or of a forerun not in the distillate that is the product
 	Carrier   float64 // kg/kg in the pot
 	PotK      float64 // boiling temperature; 0 where the step does not boil
 	HeadK     float64 // of the vapour that reaches the condenser
@@ -160,6 +160,8 @@ type Outcome struct {
 	Carrier       string  // carrier distillation: key of the carrier
 	CarrierKg     float64 // carrier charged
 	CarrierLostKg float64 // of it, not recovered as a layer that can be used again
+	Returns       string  // trap: the layer that goes back to the pot, light or heavy
+	Overhead      bool    // forerun: the distillate is the product, a wet heel stays behind
 	Condenser     Condenser
 	SolventLostL  float64
 	WasteKg       float64

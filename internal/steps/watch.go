@@ -28,6 +28,33 @@ func (o *Outcome) Watch(rows int) []Point {
 	return append(picked, c[len(c)-1])
 }
 
+// holdsOfWater is the figure of what a receiver holds before it must be drained.
+const holdsOfWater = "receiver holds of aqueous layer"
+
+// DrainAt are the points of a charge at which the receiver of a trap is full of
+// aqueous layer, before the end, between the points of the course.
+func (o *Outcome) DrainAt() (all []Point) {
+	usableM3 := o.Figure(holdsOfWater) * 1e-6
+	for i := 1; i < len(o.Course) && usableM3 > 0; i++ {
+		a, b := o.Course[i-1], o.Course[i]
+		for full := usableM3 * float64(len(all)+1); full > a.AqueousM3 && full < b.AqueousM3; full = usableM3 * float64(len(all)+1) {
+			all = append(all, between(a, b, (full-a.AqueousM3)/(b.AqueousM3-a.AqueousM3)))
+		}
+	}
+	return all
+}
+
+// between is the point at a share of the way from one to the next, by straight
+// lines; water falls by a constant factor.
+func between(a, b Point, share float64) Point {
+	line := func(from, to float64) float64 { return from + (to-from)*share }
+	return Point{
+		Hours: line(a.Hours, b.Hours), Water: a.Water * math.Pow(b.Water/a.Water, share), BoiledKg: line(a.BoiledKg, b.BoiledKg),
+		AqueousM3: line(a.AqueousM3, b.AqueousM3), DrawnM3: line(a.DrawnM3, b.DrawnM3), LostShare: line(a.LostShare, b.LostShare),
+		Carrier: line(a.Carrier, b.Carrier), PotK: line(a.PotK, b.PotK), HeadK: line(a.HeadK, b.HeadK),
+	}
+}
+
 // ReadingRepeatabilityM3 is the repeatability of the volume read in a receiver
 // that holds up to 1 mL, 0.1 mL (ASTM D95).
 const ReadingRepeatabilityM3 = 0.1e-6

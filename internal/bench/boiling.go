@@ -1,0 +1,103 @@
+package bench
+
+import (
+	"fmt"
+	"strings"
+
+	"parch/internal/quantity"
+	"parch/internal/steps"
+)
+
+// adviseBoiling says what is seen at a still, and when to stop.
+func (a *Answer) adviseBoiling() {
+	if a.Kind == steps.Trap {
+		a.adviseReceiver()
+	} else {
+		a.adviseDrawing()
+	}
+	first, last := a.Course[0], a.Course[len(a.Course)-1]
+	a.tell("boiling", "%s h to heat up; the pot goes from %s to %s, the head from %s to %s", quantity.Significant(a.Figure("heat-up, each charge"), 3),
+		quantity.FormatTemperature(first.PotK), quantity.FormatTemperature(last.PotK), quantity.FormatTemperature(first.HeadK), quantity.FormatTemperature(last.HeadK))
+	c := a.Condenser
+	a.tell("cooling", "the condenser takes up %s; %s L/min of water are run and warm by %s K (%s L/min would do at a rise of %s K)", quantity.FormatPower(c.DutyW),
+		quantity.Significant(c.RunM3PerS*litresPerMinute, 3), quantity.Significant(c.RunRiseK, 2), quantity.Significant(c.NeededM3PerS*litresPerMinute, 2), quantity.Significant(c.RiseK, 2))
+}
+
+// litresPerMinute in one m3/s.
+const litresPerMinute = 6e4
+
+// adviseReceiver tells what a trap's receiver shows and what that can prove.
+func (a *Answer) adviseReceiver() {
+	charges := a.Figure("still charges")
+	if a.Carrier != "" {
+		a.adviseCarrier()
+	}
+	a.tell("receiver", "should show about %s mL of aqueous layer%s: stop there; drained %s", quantity.Significant(a.Figure("aqueous layer, each charge"), 3), ofEach(charges), a.drained())
+	proved := steps.ProvedByReading(a.In.MassKg() / charges)
+	a.tell("reading", "repeatable to 0.1 mL, which is %s in this charge: a smaller content cannot be told from the receiver, only by a test", quantity.FormatWater(proved))
+	a.tell("reflux", "%s h%s%s", quantity.Significant(a.Figure("reflux, each charge"), 3), ofEach(charges), a.heldOn())
+	if a.Returns != "" {
+		a.tell("returns", "the %s layer goes back to the pot, the aqueous one is kept", a.Returns)
+	}
+}
+
+// heldOn says that a trap is run for longer than the water takes.
+func (a *Answer) heldOn() string {
+	heatUpH, refluxH := a.Figure("heat-up, each charge"), a.Figure("reflux, each charge")
+	if last := a.Course[len(a.Course)-1]; a.Carrier == "" && last.Hours < (heatUpH+refluxH)*(1-1e-6) {
+		return fmt.Sprintf(", the least that a trap is run for: the water is over after %s h of it", quantity.Significant(last.Hours-heatUpH, 2))
+	}
+	return ""
+}
+
+// drained says how often, and when the receiver is full before the end.
+func (a *Answer) drained() string {
+	text := times(a.Figure("drainings, each charge"))
+	var when []string
+	for i, p := range a.DrainAt() {
+		if i == 3 {
+			when = append(when, "and so on")
+			break
+		}
+		when = append(when, quantity.Significant(p.Hours, 2)+" h")
+	}
+	if len(when) == 0 {
+		return text
+	}
+	return fmt.Sprintf("%s, the first time%s after %s", text, map[bool]string{true: "s"}[len(when) > 1], strings.Join(when, ", "))
+}
+
+// adviseCarrier tells dose and whereabouts of the carrier.
+func (a *Answer) adviseCarrier() {
+	q := a.Question
+	chosen := "as given"
+	if !given(q.DoseKgPerM3) {
+		chosen = "chosen: the least lost of the doses tried"
+	}
+	a.tell("carrier", "%s of %s, %s", weighed(a.CarrierKg), q.Carrier.Name, chosen)
+	a.tell("carrier", "trapped down to %s, then stripped over %d stages in %s h%s: %s", quantity.FormatWater(a.Figure("water in the pot when the trap stops")/mgPerKg),
+		q.Stages, quantity.Significant(a.Figure("stripping, each charge"), 3), ofEach(a.Figure("still charges")), drawnVolume(a.Figure("volume drawn off, each charge")))
+	a.tell("carrier", "%s of it stay in the product, %s are in the aqueous layer, %s are lost in all: state what is left, and ask whether the use allows it",
+		quantity.FormatWater(a.Out.Carrier()), weighed(a.Figure("carrier in the aqueous layer")), weighed(a.CarrierLostKg))
+}
+
+const mgPerKg = 1e6
+
+func drawnVolume(litres float64) string {
+	return quantity.FormatVolume(litres/1e3) + " are drawn off"
+}
+
+// adviseDrawing tells which of the two is the product, and when to stop.
+func (a *Answer) adviseDrawing() {
+	charges := a.Figure("still charges")
+	volume := drawnVolume(a.Figure("volume drawn off, each charge"))
+	if a.Overhead {
+		a.tell("product", "what distils over: the solvent boils off first, the wet heel stays behind")
+		a.tell("stop", "when %s%s", volume, ofEach(charges))
+	} else {
+		a.tell("product", "what stays in the pot: the water leaves first, and the forerun is lost")
+		a.tell("stop", "when %s%s, with %s %% of water in it", volume, ofEach(charges), quantity.Significant(a.Figure("water in what is drawn off"), 3))
+	}
+	a.tell("reading", "neither volume nor temperature proves a water content: the last of it moves the head by less than can be read; test the product")
+	a.tell("drawing", "%s h over %d stages%s", quantity.Significant(a.Figure("drawing off, each charge"), 3), a.Question.Stages, ofEach(charges))
+}

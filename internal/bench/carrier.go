@@ -1,0 +1,145 @@
+package bench
+
+import (
+	"fmt"
+	"maps"
+	"slices"
+	"strconv"
+	"strings"
+
+	"parch/catalog"
+	"parch/internal/document"
+	"parch/internal/quantity"
+	"parch/internal/routes"
+	"parch/internal/steps"
+)
+
+// stage is the step as a route would hold it.
+func (q *Question) stage() routes.Stage {
+	s := routes.Stage{Kind: q.Kind}
+	if q.Agent != nil {
+		s.Agent = q.Agent.Key
+	}
+	if q.Carrier != nil {
+		s.Carrier = q.Carrier.Key
+	}
+	return s
+}
+
+// heated tells the steps that boil the lot.
+func heated(k steps.Kind) bool {
+	return k == steps.Trap || k == steps.Forerun || k == steps.Reactive
+}
+
+// carrier finds the carrier by key, name or alias.
+func (r *reader) carrier() {
+	typed, ok := r.flags["carrier"]
+	if !ok || !slices.Contains(uses[r.q.Kind].takes, "carrier") {
+		return
+	}
+	carriers := slices.Sorted(maps.Keys(r.cat.Carriers))
+	for _, key := range carriers {
+		s := r.cat.Solvents[key]
+		for _, word := range slices.Concat([]string{s.Key, s.Name}, s.Aliases) {
+			if strings.EqualFold(word, strings.TrimSpace(typed)) {
+				r.q.Carrier = s
+			}
+		}
+	}
+	switch {
+	case r.q.Carrier == nil:
+		hint := "carriers: " + strings.Join(carriers, ", ")
+		if near := document.Nearest(typed, carriers); len(near) > 0 {
+			hint = "did you mean " + strings.Join(near, " or ") + "?"
+		}
+		r.mistake(fmt.Sprintf("--carrier: %s is not a carrier of the catalog", quantity.Quote(typed)), hint)
+	case r.q.Solvent != nil && r.q.Carrier.Key == r.q.Solvent.Key:
+		r.mistake(fmt.Sprintf("--carrier: %s cannot carry water out of itself", r.q.Carrier.Name), "leave it out: parch step trap")
+	}
+}
+
+// stages reads the height of the column.
+func (r *reader) stages() {
+	text, ok := r.flags["stages"]
+	if !ok {
+		return
+	}
+	n, err := strconv.Atoi(strings.TrimSpace(text))
+	if err != nil || n < 0 || n > steps.MostStages {
+		r.mistake(fmt.Sprintf("--stages: %s is not a number of stages; allowed: 0, a simple still, to %d", quantity.Quote(text), steps.MostStages), "")
+		return
+	}
+	r.q.Stages = n
+}
+
+// peroxidesOfCarrier holds a carrier that forms peroxides back until a reading is
+// given, which is then one of lot and carrier.
+func peroxidesOfCarrier(k *routes.Case, q *Question) error {
+	if q.Carrier == nil {
+		return nil
+	}
+	h, limit := q.Carrier.Hazards, k.Job.Site.PeroxideLimitKgPerM3
+	switch {
+	case h.PeroxideClass == "none" || h.PeroxideClass == "":
+		return nil
+	case !given(q.PeroxideKgPerM3):
+		return &Refusal{
+			Reason: fmt.Sprintf("test first: the carrier %s forms peroxides (class %s) and no reading is given", q.Carrier.Name, h.PeroxideClass),
+			Hint:   fmt.Sprintf(`give the higher reading of lot and carrier, under the limit of %s, with --peroxide "0 mg/L"`, quantity.FormatConcentration(limit)),
+			Source: h.Source, Confidence: h.Confidence,
+		}
+	case q.PeroxideKgPerM3 > 0 && q.PeroxideKgPerM3 >= limit:
+		return &Refusal{Reason: fmt.Sprintf("not heated: the peroxide reading of %s is not under the limit of %s", quantity.FormatConcentration(q.PeroxideKgPerM3), quantity.FormatConcentration(limit)), Source: h.Source, Confidence: h.Confidence}
+	}
+	return nil
+}
+
+// lessWasteful says what would take less of the lot.
+func lessWasteful(k *routes.Case, q *Question) string {
+	if q.Kind != steps.Forerun {
+		return "a taller column (--stages) parts carrier and solvent better; another dose or carrier may"
+	}
+	stages, share, ok := k.SparingColumn(q.Goal)
+	if !ok {
+		return "no column of the catalog does better: a sieve takes this water without such a loss"
+	}
+	return fmt.Sprintf("over %d stages it takes %s %%: --stages %d", stages, quantity.Significant(100*share, 2), stages)
+}
+
+// restsOnCarrier lists what a carrier distillation rests on beside a trap.
+func (a *Answer) restsOnCarrier() {
+	if a.Question.Carrier == nil {
+		return
+	}
+	c, pair := a.Case.Catalog, [2]string{a.Question.Solvent.Key, a.Question.Carrier.Key}
+	what := a.Question.Solvent.Name + " with " + a.Question.Carrier.Name
+	if set := c.Ternaries[pair]; set != nil {
+		a.rests("activity of the three together", fmt.Sprintf("fitted to tie-lines, a factor of %.2g", set.Band), set.Origin)
+	} else if p := c.Pairs[pair]; p != nil {
+		a.rests(what+": activity", "", p.Origin)
+	}
+	if l := c.Layers[pair]; l != nil {
+		a.rests("water of the organic layer in the receiver", fmt.Sprintf("measured tie-lines, a factor of %.2g", l.Factor), l.Origin)
+	}
+	a.rests("carrier", c.Carriers[a.Carrier].Reason, c.Carriers[a.Carrier].Origin)
+	a.habit("carrier left in the product", "carrier-limit")
+	a.restsOnColumn()
+}
+
+// restsOnForerun lists what drawing off rests on.
+func (a *Answer) restsOnForerun() {
+	a.habit("heat that reaches the liquid", "heat-share")
+	a.habit("lowest outlet claimed", "trap-outlet-minimum")
+	a.habit("share of it attended", "trap-attended-share")
+	a.habit("cooling water", "cooling-flow")
+	a.restsOnColumn()
+	a.heater()
+}
+
+func (a *Answer) restsOnColumn() {
+	a.habit("heel", "forerun-heel")
+	if a.Question.Stages > 0 {
+		a.habit("returned to the column per part drawn off", "forerun-reflux")
+		a.rests("stages at total reflux", fmt.Sprintf("the best that %d stages can do", a.Question.Stages), catalog.Origin{Source: "assumption", Confidence: catalog.Assumption, Note: "a finite reflux parts less sharply"})
+	}
+}

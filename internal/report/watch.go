@@ -1,0 +1,50 @@
+package report
+
+import (
+	"parch/internal/bench"
+	"parch/internal/quantity"
+	"parch/internal/steps"
+)
+
+const watched = 10 // rows
+
+// watch shows what is seen at a still as it goes on, in each charge.
+func (p *page) watch(a *bench.Answer) {
+	if a.Kind != steps.Trap && a.Kind != steps.Forerun {
+		return
+	}
+	where := "In the pot\nmg/kg"
+	if a.Overhead {
+		where = "In the product\nmg/kg"
+	}
+	columns := []column{{"Hours", true, 0}, {"Pot\n°C", true, 0}, {"Head\n°C", true, 0}, {"Receiver\nmL", true, 0}, {where, true, 0}}
+	if a.Carrier != "" {
+		columns = append(columns, column{"Carrier\n%", true, 0}, column{"Drawn off\nmL", true, 0})
+	}
+	columns = append(columns, column{"Solvent lost\n%", true, 0})
+	p.heading("To watch, in each charge:")
+	var rows [][]string
+	for _, pt := range a.Watch(watched) {
+		collected := pt.AqueousM3
+		if a.Kind == steps.Forerun {
+			collected = pt.DrawnM3
+		}
+		row := []string{quantity.Significant(pt.Hours, 3), kelvins(pt.PotK), kelvins(pt.HeadK), quantity.Significant(collected*1e6, 3), traceOf(pt.Water)}
+		if a.Carrier != "" {
+			row = append(row, quantity.Significant(100*pt.Carrier, 3), quantity.Significant(pt.DrawnM3*1e6, 3))
+		}
+		rows = append(rows, append(row, quantity.Significant(100*pt.LostShare, 3)))
+	}
+	p.table(columns, rows)
+}
+
+// traceOf is a water content; where a carrier is stripped it falls to nothing.
+func traceOf(water float64) string {
+	if water < 1e-8 {
+		return "< 0.01"
+	}
+	return mgKg(water)
+}
+
+// kelvins is a temperature in °C to a tenth.
+func kelvins(k float64) string { return quantity.Significant(k-273.15, 4) }
