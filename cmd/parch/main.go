@@ -3,10 +3,12 @@ package main
 
 import (
 	"context"
+	"fmt"
 	"os"
 	"os/signal"
 	"runtime/debug"
 	"syscall"
+	"time"
 
 	"parch/internal/cli"
 )
@@ -17,11 +19,24 @@ func main() { os.Exit(run()) }
 // garbage is collected: a short command ends before the first time.
 const fewCollections = 400 // %
 
+// grace is how long the work has after an interrupt to end by itself.
+const grace = 2 * time.Second
+
 func run() int {
+	if err := enoughSpace(); err != nil {
+		fmt.Fprintf(os.Stderr, "parch: %v\n", err)
+		return 1
+	}
 	if os.Getenv("GOGC") == "" {
 		debug.SetGCPercent(fewCollections)
 	}
 	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt, syscall.SIGTERM)
 	defer stop()
+	context.AfterFunc(ctx, func() {
+		time.Sleep(grace)
+		cli.HoldFiles()
+		fmt.Fprintln(os.Stderr, "parch: interrupted; nothing more was written")
+		os.Exit(1)
+	})
 	return cli.Run(ctx, os.Args[1:], os.Stdin, os.Stdout, os.Stderr)
 }

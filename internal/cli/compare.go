@@ -192,7 +192,9 @@ func (p *program) deliver(ctx context.Context, q request, r *study.Report) error
 	err = errors.Join(err, workbook.Write(&book, r.Priced()), report.JSON(&doc, r))
 	opts := report.Options{}
 	if err == nil {
-		opts, err = q.writeFiles(ctx, p.disk, book.Bytes(), doc.Bytes(), tables)
+		d := p.disk
+		d.force = q.force
+		opts, err = q.writeFiles(ctx, d, book.Bytes(), doc.Bytes(), tables)
 	}
 	opts.All = q.all
 	return errors.Join(failed(err), failed(p.print(q, r, opts, doc.Bytes())), unreached(r))

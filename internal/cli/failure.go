@@ -50,6 +50,10 @@ func failed(err error) error {
 	if errors.Is(err, context.Canceled) {
 		return &failure{status: statusFailed, err: errors.New("interrupted; nothing more was written")}
 	}
+	var known *failure
+	if errors.As(err, &known) {
+		return err
+	}
 	if errors.Is(err, routes.ErrSettings) {
 		return &failure{status: statusMisused, err: err, hint: "take the settings from a run of the same job, or leave --settings-from out"}
 	}

@@ -56,6 +56,12 @@ func faultyDisk(f fault) (d disk, struck *bool) {
 		}
 		return realDisk.replace(from, to)
 	}
+	d.appear = func(from, to string) error {
+		if fails("replace") {
+			return &os.LinkError{Op: "link", Old: from, New: to, Err: f.err}
+		}
+		return realDisk.appear(from, to)
+	}
 	d.makeDir = func(path string) error {
 		if fails("folder") {
 			return &fs.PathError{Op: "mkdir", Path: path, Err: f.err}
@@ -147,6 +153,7 @@ func strike(t *testing.T, f fault, old bool) {
 		}
 	}
 	d, struck := faultyDisk(f)
+	d.force = old
 	_, err := q.writeFiles(context.Background(), d, book, doc, tables)
 	if !*struck {
 		t.Fatal("the fault did not strike")
@@ -196,6 +203,8 @@ func TestPartThatStaysIsNamed(t *testing.T) {
 // Two runs at once to the same file: the file is one of the two, whole.
 func TestTwoRunsToOneFile(t *testing.T) {
 	path := filepath.Join(t.TempDir(), "plan.xlsx")
+	d := realDisk
+	d.force = true
 	contents := [][]byte{bytes.Repeat([]byte("a"), 300_000), bytes.Repeat([]byte("b"), 200_000)}
 	done := make(chan error)
 	const rounds = 50
@@ -203,7 +212,7 @@ func TestTwoRunsToOneFile(t *testing.T) {
 		go func() {
 			var err error
 			for range rounds {
-				err = errors.Join(err, realDisk.write(path, data))
+				err = errors.Join(err, d.write(path, data))
 			}
 			done <- err
 		}()
@@ -214,6 +223,25 @@ func TestTwoRunsToOneFile(t *testing.T) {
 	got, err := os.ReadFile(path)
 	if err != nil || !bytes.Equal(got, contents[0]) && !bytes.Equal(got, contents[1]) {
 		t.Errorf("%d bytes, %v", len(got), err)
+	}
+	walk(t, filepath.Dir(path), func(found string, _ []byte) {
+		if found != path {
+			t.Errorf("%s stays behind", found)
+		}
+	})
+}
+
+// A file that comes up while the work is done is kept unless it may be written over.
+func TestFileThatComesUpMeanwhileIsKept(t *testing.T) {
+	path := filepath.Join(t.TempDir(), "plan.xlsx")
+	first := realDisk.write(path, []byte("first"))
+	second := realDisk.write(path, []byte("second"))
+	got, err := os.ReadFile(path)
+	if first != nil || err != nil || string(got) != "first" {
+		t.Errorf("%q, %v, %v", got, first, err)
+	}
+	if second == nil || !strings.Contains(second.Error(), "was kept") {
+		t.Errorf("the second run says %v", second)
 	}
 	walk(t, filepath.Dir(path), func(found string, _ []byte) {
 		if found != path {

@@ -13,6 +13,10 @@ import (
 // width is the number of columns that the text keeps to.
 const width = 100
 
+// The library takes signs such as "°" to be two columns wide in some languages of
+// the system; a report has the same lines everywhere.
+func init() { text.OverrideRuneWidthEastAsianWidth(false) }
+
 // page collects lines and remembers the first error of the writer.
 type page struct {
 	w   io.Writer
