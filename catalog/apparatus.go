@@ -5,7 +5,7 @@ import (
 	"parch/internal/quantity"
 )
 
-var apparatusKinds = []string{"still", "receiver", "vessel", "oven", "column", "fractionating column", "chiller", "vacuum oven", "furnace"}
+var apparatusKinds = []string{"still", "receiver", "vessel", "oven", "column", "fractionating column", "chiller", "vacuum pump", "vacuum oven", "furnace"}
 
 func (s *shelf) readApparatus() {
 	s.cat.Apparatus = map[string]*Apparatus{}
@@ -57,6 +57,7 @@ var needed = map[string][]string{
 	"column":               {"diameter", "length"},
 	"fractionating column": {"length", "stages"},
 	"chiller":              {"cooling", "power"},
+	"vacuum pump":          {"power"},
 	"vacuum oven":          {"volume", "load", "energy"},
 	"furnace":              {"volume", "load", "energy"},
 }

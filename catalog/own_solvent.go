@@ -48,6 +48,7 @@ func (s *shelf) ownSolvent(e document.Entry, f document.Fields) *Solvent {
 		Class: f.Need("class").Text(), Aliases: f.Get("aliases").Texts(), Own: true,
 		BoilingPoint: s.value(f.Need("boiling point"), quantity.Temperature),
 		FlashPoint:   s.optional(f.Get("flash point"), quantity.Temperature),
+		HottestPot:   s.optional(f.Get("hottest pot"), quantity.Temperature),
 		Autoignition: s.optional(f.Get("autoignition"), quantity.Temperature),
 	}
 	s.checkKey(e)

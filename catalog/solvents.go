@@ -16,7 +16,7 @@ const waterKey = "water"
 
 var solventKeys = []string{
 	"key", "name", "cas", "formula", "class", "aliases", "hydrogen bonds",
-	"molar mass", "boiling point", "melting point", "critical temperature", "flash point", "autoignition",
+	"molar mass", "boiling point", "melting point", "critical temperature", "flash point", "autoignition", "hottest pot",
 	"vapour pressure", "heat of vaporization", "heat capacity", "density", "viscosity", "known miss", "water pair", "hazards",
 }
 
@@ -78,6 +78,7 @@ func (s *shelf) solvent(root *document.Node, f document.Fields) *Solvent {
 		CriticalTemperature: s.value(f.Need("critical temperature"), quantity.Temperature),
 		FlashPoint:          s.optional(f.Get("flash point"), quantity.Temperature),
 		Autoignition:        s.optional(f.Get("autoignition"), quantity.Temperature),
+		HottestPot:          s.optional(f.Get("hottest pot"), quantity.Temperature),
 		Hazards:             s.hazards(f.Need("hazards")),
 	}
 	for _, p := range properties {

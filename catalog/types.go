@@ -65,6 +65,7 @@ type Solvent struct {
 
 	MolarMass, BoilingPoint, MeltingPoint, CriticalTemperature Value  // kg/mol, K, K, K
 	FlashPoint, Autoignition                                   *Value // K; nil where none is known
+	HottestPot                                                 *Value // K; a pot is boiled no hotter; nil: no limit
 	VapourPressure, HeatOfVaporization                         Curve
 	HeatCapacity, Density, Viscosity                           Curve
 	Pure                                                       thermo.Pure // the curves above, ready to evaluate

@@ -132,6 +132,7 @@ func (a *Answer) restsOnForerun() {
 	a.habit("lowest outlet claimed", "trap-outlet-minimum")
 	a.habit("share of it attended", "trap-attended-share")
 	a.habit("cooling water", "cooling-flow")
+	a.restsOn("hottest pot", a.Question.Solvent.HottestPot)
 	a.restsOnColumn()
 	a.heater()
 }

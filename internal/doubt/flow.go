@@ -79,7 +79,7 @@ func Plan(run *routes.Run) string {
 func ahead(run *routes.Run, place int) string {
 	key := run.Route[:place].ID()
 	if place > 0 {
-		key += fmt.Sprint(run.Route[place].Kind, run.Settings.Stages, run.Settings.Receiver, run.Settings.ReceiverC)
+		key += fmt.Sprint(run.Route[place].Kind, run.Settings.Stages, run.Settings.PressureKPa, run.Settings.Receiver, run.Settings.ReceiverC)
 	}
 	for i := range place {
 		o := &run.Outcomes[i]

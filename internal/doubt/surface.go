@@ -147,7 +147,7 @@ func (l *Lot) surfaceOf(run *routes.Run, place int, waters []float64) (*surface,
 	if place+1 < len(run.Route) {
 		next = run.Route[place+1].Kind // a pot that goes on hot
 	}
-	key := fmt.Sprint(ahead(run, place), run.Route[place], next, run.Settings.Stages, run.Settings.Receiver, run.Settings.ReceiverC, run.Outcomes[place].In, goal)
+	key := fmt.Sprint(ahead(run, place), run.Route[place], next, run.Settings.Stages, run.Settings.PressureKPa, run.Settings.Receiver, run.Settings.ReceiverC, run.Outcomes[place].In, goal)
 	r := l.boiled.Of(key, func() (r result[*surface]) {
 		r.value, r.err = l.newSurface(run, place, goal, waters)
 		return r

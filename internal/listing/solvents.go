@@ -20,6 +20,7 @@ func solvent(key string, s *catalog.Solvent) Entry {
 	f.value("melting point", &s.MeltingPoint)
 	f.value("critical temperature", &s.CriticalTemperature)
 	f.value("flash point", s.FlashPoint)
+	f.value("hottest pot", s.HottestPot)
 	f.value("autoignition", s.Autoignition)
 	f.curve(s, "vapour pressure", s.VapourPressure, "Pa")
 	f.curve(s, "heat of vaporization", s.HeatOfVaporization, "J/mol")

@@ -44,6 +44,11 @@ func (c *Case) account(place int, o steps.Outcome, choice choice) []StageUse {
 		if column, ok := c.Catalog.Apparatus[o.Apparatus]; ok {
 			uses = append(uses, c.wear(place, column, 1)...)
 		}
+		if pumps := c.pieces("vacuum pump"); choice.kPa > 0 && len(pumps) > 0 {
+			hours := o.Figure("still charges") * (o.Figure("heat-up, each charge") + o.Figure("drawing off, each charge"))
+			use(steps.Energy, "electricity", "kwh", pumps[0].Power.SI*hours/1e3, fmt.Sprintf("vacuum pump, %.3g kPa", choice.kPa))
+			uses = append(uses, c.wear(place, pumps[0], 1)...)
+		}
 	case steps.Salt:
 		use(steps.Agent, o.Agent, "kg", o.AgentKg, "used once")
 	case steps.Reactive:

@@ -242,10 +242,7 @@ func (c *Case) Label(r Route, settings Settings) string {
 				parts[i] = "boil out with " + c.Catalog.Solvents[s.Carrier].Name + " under a trap"
 			}
 		case steps.Forerun:
-			parts[i] = "draw off a forerun"
-			if r.Strips(i) {
-				parts[i] = "draw off the carrier"
-			}
+			parts[i] = c.forerunLabel(r, i, settings)
 		case steps.Salt:
 			parts[i] = "stir with " + c.Catalog.Agents[s.Agent].Name
 		case steps.Soak:
@@ -262,4 +259,19 @@ func (c *Case) Label(r Route, settings Settings) string {
 		}
 	}
 	return strings.Join(parts, ", ")
+}
+
+// forerunLabel says what is drawn off, and at which pressure.
+func (c *Case) forerunLabel(r Route, i int, settings Settings) string {
+	label := "draw off a forerun"
+	switch {
+	case r.Strips(i):
+		return "draw off the carrier"
+	case c.Overhead():
+		label = "distil off a wet heel"
+	}
+	if k := r[:i].count(steps.Forerun); k < len(settings.PressureKPa) && settings.PressureKPa[k] > 0 {
+		label += fmt.Sprintf(" at %g kPa", settings.PressureKPa[k])
+	}
+	return label
 }

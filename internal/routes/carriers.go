@@ -3,11 +3,13 @@ package routes
 import (
 	"errors"
 	"fmt"
+	"math"
 	"slices"
 	"sort"
 
 	"parch/catalog"
 	"parch/internal/mixture"
+	"parch/internal/quantity"
 	"parch/internal/steps"
 	"parch/internal/thermo"
 )
@@ -181,6 +183,7 @@ func (c *Case) boilWithCarrier(key string, lot steps.Lot, goal float64, choice c
 	plan.Goal, plan.PreFilled = goal, receiver.PreFilled
 	rig := c.carrierRig(receiver.Returns, receiver.FillVolume.SI, receiver.Volume.SI, lot, plan.DoseKg/c.carrierDensity(key))
 	o, err := steps.RunCarrierTrap(eq, lot, plan, rig, rules)
+	c.warnOfHotPot(&o)
 	o.Apparatus = receiver.Key
 	return o, err
 }
@@ -203,6 +206,7 @@ func (c *Case) stripCarrier(key string, lot steps.Lot, choice choice) (steps.Out
 	if err != nil {
 		return o, err
 	}
+	c.warnOfHotPot(&o)
 	if column := c.columnOf(choice.stages); column != nil {
 		o.Apparatus = column.Key
 	}
@@ -213,4 +217,17 @@ func (c *Case) stripCarrier(key string, lot steps.Lot, choice choice) (steps.Out
 		return o, refusal{fmt.Errorf("stripping %s over %d stages would take %.0f %% of the lot with it", key, choice.stages, 100*lost)}
 	}
 	return o, nil
+}
+
+// warnOfHotPot says where a pot is hotter than its solvent should be. A carrier is
+// boiled out at the site's pressure only.
+func (c *Case) warnOfHotPot(o *steps.Outcome) {
+	limit, hottestK := c.Solvent.HottestPot, 0.0
+	for _, p := range o.Course {
+		hottestK = math.Max(hottestK, p.PotK)
+	}
+	if limit != nil && hottestK > limit.SI {
+		o.Warnings = append(o.Warnings, fmt.Sprintf("the pot reaches %s, above the %s that %s should not pass (%s); a forerun under reduced pressure stays below it",
+			quantity.FormatTemperature(hottestK), limit.Text, c.Solvent.Name, limit.Note))
+	}
 }

@@ -45,7 +45,7 @@ func NewCase(j *job.Job, lot job.Lot, c *catalog.Catalog) (*Case, error) {
 	trap, noTrap := steps.NewTrapEquilibrium(m, j.Site.ReceiverK, j.Site.PressurePa)
 	return (&Case{
 		Job: j, Catalog: c, Solvent: solvent, Mixture: m, Assay: method, Trap: trap, NoTrap: noTrap,
-		site: &equilibria{traps: map[float64]*steps.TrapEquilibrium{}, carriers: map[string]carrierEquilibrium{}},
+		site: &equilibria{traps: map[float64]*steps.TrapEquilibrium{}, carriers: map[string]carrierEquilibrium{}, foreruns: map[float64]forerunEquilibrium{}},
 	}).With(lot), nil
 }
 

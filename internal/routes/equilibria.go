@@ -9,12 +9,11 @@ import (
 // equilibria are what the boiling steps of a solvent rest on at one site. They do
 // not depend on the lot and are worked out once.
 type equilibria struct {
-	lock       sync.Mutex
-	traps      map[float64]*steps.TrapEquilibrium // by receiver temperature, K
-	carriers   map[string]carrierEquilibrium      // by carrier
-	forerun    *steps.ForerunEquilibrium
-	forerunErr error
-	saturated  *solubility
+	lock      sync.Mutex
+	traps     map[float64]*steps.TrapEquilibrium // by receiver temperature, K
+	carriers  map[string]carrierEquilibrium      // by carrier
+	foreruns  map[float64]forerunEquilibrium     // by pressure, Pa
+	saturated *solubility
 }
 
 // solubility of water at room temperature.
@@ -59,11 +58,19 @@ func (e *equilibria) carrier(key string, find func() carrierEquilibrium) carrier
 	return known
 }
 
-func (e *equilibria) forerunOf(find func() (*steps.ForerunEquilibrium, error)) (*steps.ForerunEquilibrium, error) {
+// forerunEquilibrium is what was found for a pressure.
+type forerunEquilibrium struct {
+	eq  *steps.ForerunEquilibrium
+	err error
+}
+
+func (e *equilibria) forerunAt(pressurePa float64, find func() (*steps.ForerunEquilibrium, error)) (*steps.ForerunEquilibrium, error) {
 	e.lock.Lock()
 	defer e.lock.Unlock()
-	if e.forerun == nil && e.forerunErr == nil {
-		e.forerun, e.forerunErr = find()
+	known, ok := e.foreruns[pressurePa]
+	if !ok {
+		known.eq, known.err = find()
+		e.foreruns[pressurePa] = known
 	}
-	return e.forerun, e.forerunErr
+	return known.eq, known.err
 }

@@ -145,7 +145,11 @@ func (f *follower) note(run *Run) {
 				f.trap[c] = append(f.trap[c], p.Water)
 			}
 		case steps.Forerun:
-			n := run.Settings.at(run.Route, i).stages
+			choice := run.Settings.at(run.Route, i)
+			if choice.kPa > 0 {
+				continue // stands as values
+			}
+			n := choice.stages
 			f.forerun[n] = append(f.forerun[n], in, out, math.Max(goal, f.practice("trap-outlet-minimum")))
 			if len(o.Course) > 0 {
 				f.forerun[n] = append(f.forerun[n], o.Course[len(o.Course)-1].Water)

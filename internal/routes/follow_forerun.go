@@ -29,8 +29,8 @@ func (f *follower) forerunCurve(stages int, waters []float64) (curve Curve, ok b
 }
 
 func (f *follower) forerunConstants(o steps.Outcome, choice choice) Constants {
-	if !math.IsNaN(o.Floor) {
-		return nil // the distillate is the product
+	if o.Overhead || choice.kPa > 0 {
+		return nil // the curves are of a pot that is the product, at the site's pressure
 	}
 	r := f.forerunRules(choice)
 	k := Constants{"stages": float64(choice.stages), "heel share": r.HeelShare, "driest kg/kg": r.LowestOutlet, "set-up s": r.SetUpS,

@@ -15,9 +15,7 @@ const wastefulForerun = 0.5
 
 // runForerun draws the water off without return, over the column of the settings.
 func (c *Case) runForerun(lot steps.Lot, goal float64, choice choice) (steps.Outcome, error) {
-	eq, err := c.site.forerunOf(func() (*steps.ForerunEquilibrium, error) {
-		return steps.NewForerunEquilibrium(c.Mixture, c.Job.Site.PressurePa)
-	})
+	eq, err := c.forerunAt(choice.kPa)
 	if err != nil {
 		return steps.Outcome{}, err
 	}
@@ -43,7 +41,52 @@ func (c *Case) forerunRig(stages int) steps.ForerunRig {
 	if stages > 0 {
 		rig.RefluxRatio = c.practice("forerun-reflux")
 	}
+	if c.Solvent.HottestPot != nil {
+		rig.HighestPotK = c.Solvent.HottestPot.SI
+	}
 	return rig
+}
+
+// forerunAt is the equilibrium of a forerun at a pressure (kPa; 0: the site's).
+func (c *Case) forerunAt(kPa float64) (*steps.ForerunEquilibrium, error) {
+	pressurePa := c.Job.Site.PressurePa
+	if kPa > 0 {
+		pressurePa = kPa * 1e3
+	}
+	return c.site.forerunAt(pressurePa, func() (*steps.ForerunEquilibrium, error) {
+		return steps.NewForerunEquilibrium(c.Mixture, pressurePa)
+	})
+}
+
+// reducedKPa are the pressures at which a high boiler is drawn over.
+var reducedKPa = []float64{20, 10, 5, 2, 1}
+
+// ForerunPressures (kPa; 0: the site's) are those that a forerun of the lot may be
+// drawn at: the site's for most solvents; for one whose pot may not become as hot as
+// it boils there, those of reducedKPa at which it stays below its limit, boils above
+// the room and its vapour condenses.
+func (c *Case) ForerunPressures() []float64 {
+	limit := c.Solvent.HottestPot
+	if eq, err := c.forerunAt(0); limit == nil || err != nil || eq.DryK <= limit.SI {
+		return []float64{0}
+	}
+	var all []float64
+	for _, kPa := range reducedKPa {
+		eq, err := c.forerunAt(kPa)
+		if err == nil && steps.CheckForerun(eq, c.Feed, c.forerunRig(0), c.forerunRules(choice{})) == nil {
+			all = append(all, kPa)
+		}
+	}
+	if len(all) == 0 {
+		return []float64{0} // refused with its reason
+	}
+	return all
+}
+
+// Overhead reports whether a forerun of the lot has the distillate for its product.
+func (c *Case) Overhead() bool {
+	eq, err := c.forerunAt(0)
+	return err == nil && eq.Overhead(c.Feed)
 }
 
 // coolantK is the temperature of the cooling water: of the tap, or as cold as a

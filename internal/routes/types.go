@@ -52,6 +52,9 @@ func (r Route) count(kinds ...steps.Kind) int {
 // leastAim is the driest that a step is sized for, mg/kg.
 const leastAim = 1e-3
 
+// leastKPa and mostKPa are the pressures that a still is run at.
+const leastKPa, mostKPa = 1, 110
+
 // mostDose of a carrier, kg per kg of solvent.
 const mostDose = 10
 
@@ -61,8 +64,9 @@ const longestSoakHours = 366 * 24
 // choice is what the settings say of one stage.
 type choice struct {
 	stages    int
-	hot       bool // the pot comes hot from the step before
-	goesOn    bool // the next step takes the pot hot
+	kPa       float64 // of a forerun; 0: the site's
+	hot       bool    // the pot comes hot from the step before
+	goesOn    bool    // the next step takes the pot hot
 	soakHours float64
 	stirred   bool
 	after     string  // what is done with the sieve
@@ -76,7 +80,11 @@ type choice struct {
 // at returns the choices of stage i.
 func (s Settings) at(r Route, i int) (c choice) {
 	if r[i].Kind == steps.Forerun {
-		c.stages = s.Stages[r[:i].count(steps.Forerun)]
+		k := r[:i].count(steps.Forerun)
+		c.stages = s.Stages[k]
+		if k < len(s.PressureKPa) && !r.Strips(i) {
+			c.kPa = s.PressureKPa[k]
+		}
 		c.hot = i > 0 && r[i-1].Kind == steps.Trap
 	}
 	if r[i].Carrier != "" {
@@ -122,6 +130,7 @@ type Settings struct {
 	HandOverMgPerKg []float64 `json:"hand_over_mg_per_kg"`     // water after each stage but the last
 	SoakHours       []float64 `json:"soak_hours,omitempty"`    // one for each soak
 	Stages          []int     `json:"stages,omitempty"`        // of the column of each forerun; 0: a simple still
+	PressureKPa     []float64 `json:"pressure_kpa,omitempty"`  // of each forerun; 0, or not given: the site's
 	Stirred         []bool    `json:"stirred,omitempty"`       // one for each soak
 	Sieve           []string  `json:"sieve,omitempty"`         // "regenerate" or "discard", one for each soak or column
 	Receiver        []string  `json:"receiver,omitempty"`      // of each trap: key of the apparatus
@@ -148,6 +157,14 @@ func (s Settings) Fit(r Route) error {
 	soaks, beds := r.count(steps.Soak), r.count(steps.Soak, steps.Column)
 	if foreruns := r.count(steps.Forerun); len(s.Stages) != foreruns {
 		return fmt.Errorf("%s: %w: %d column stages for %d foreruns", r.ID(), ErrSettings, len(s.Stages), foreruns)
+	}
+	if foreruns := r.count(steps.Forerun); len(s.PressureKPa) > foreruns {
+		return fmt.Errorf("%s: %w: %d pressures for %d foreruns", r.ID(), ErrSettings, len(s.PressureKPa), foreruns)
+	}
+	for _, kPa := range s.PressureKPa {
+		if kPa != 0 && !(kPa >= leastKPa && kPa <= mostKPa) {
+			return fmt.Errorf("%s: %w: a pressure of %g kPa; %d to %d kPa are allowed, or 0 for the site's", r.ID(), ErrSettings, kPa, leastKPa, mostKPa)
+		}
 	}
 	if len(s.HandOverMgPerKg) != len(r)-1 || len(s.SoakHours) != soaks || len(s.Stirred) > soaks || len(s.Sieve) != beds {
 		return fmt.Errorf("%s: %w: %d hand-overs, %d soak hours, %d stirred, %d sieve choices", r.ID(), ErrSettings,

@@ -67,7 +67,7 @@ func (t *Tuner) screen(all []routes.Route) (good []screened) {
 		if r.CarrierOf() == "" || len(r) != 2 { // the carrier by itself
 			continue
 		}
-		s := blank(r)
+		s := t.blank(r)
 		s.CarrierDose[0] = routes.UsualCarrierDose
 		stages := t.Case.ColumnStages()
 		s.Stages[0] = stages[len(stages)-1]

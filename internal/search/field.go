@@ -82,7 +82,11 @@ func (t *Tuner) LeastCost(r routes.Route) float64 {
 	if len(head) == 0 || has(head, steps.Soak) || has(head, steps.Column) || r.CarrierOf() != "" {
 		return 0
 	}
-	s := blank(head)
+	s := t.blank(head)
+	for i := range s.PressureKPa { // the coldest pot takes the least heat
+		all := t.Case.ForerunPressures()
+		s.PressureKPa[i] = all[len(all)-1]
+	}
 	for _, place := range places(r) {
 		if place < len(head)-1 {
 			s.HandOverMgPerKg[place] = t.Case.Feed.Water() * 1e6

@@ -32,9 +32,9 @@ type stand struct {
 }
 
 // blank are settings of the right shape, with nothing chosen.
-func blank(r routes.Route) routes.Settings {
+func (t *Tuner) blank(r routes.Route) routes.Settings {
 	s := routes.Settings{HandOverMgPerKg: make([]float64, len(r)-1)}
-	for _, stage := range r {
+	for i, stage := range r {
 		switch stage.Kind {
 		case steps.Soak:
 			s.SoakHours, s.Stirred, s.Sieve = append(s.SoakHours, 0), append(s.Stirred, false), append(s.Sieve, "")
@@ -42,6 +42,9 @@ func blank(r routes.Route) routes.Settings {
 			s.Sieve = append(s.Sieve, "")
 		case steps.Forerun:
 			s.Stages = append(s.Stages, 0)
+			if kPa := t.Case.ForerunPressures()[0]; kPa > 0 && !r.Strips(i) {
+				s.PressureKPa = append(s.PressureKPa, kPa)
+			}
 		case steps.Trap:
 			s.Receiver, s.ReceiverC = append(s.Receiver, ""), append(s.ReceiverC, 0)
 			if stage.Carrier != "" {
@@ -55,7 +58,7 @@ func blank(r routes.Route) routes.Settings {
 func cloned(s routes.Settings) routes.Settings {
 	s.HandOverMgPerKg, s.SoakHours, s.Stages = slices.Clone(s.HandOverMgPerKg), slices.Clone(s.SoakHours), slices.Clone(s.Stages)
 	s.Stirred, s.Sieve, s.Receiver, s.ReceiverC = slices.Clone(s.Stirred), slices.Clone(s.Sieve), slices.Clone(s.Receiver), slices.Clone(s.ReceiverC)
-	s.CarrierDose = slices.Clone(s.CarrierDose)
+	s.CarrierDose, s.PressureKPa = slices.Clone(s.CarrierDose), slices.Clone(s.PressureKPa)
 	return s
 }
 
@@ -64,7 +67,7 @@ func cloned(s routes.Settings) routes.Settings {
 func (t *Tuner) axes(r routes.Route, stands []stand) (all []axis) {
 	count := map[steps.Kind]int{}
 	beds, carriers := 0, 0
-	for _, stage := range r {
+	for i, stage := range r {
 		k := count[stage.Kind]
 		count[stage.Kind]++
 		switch stage.Kind {
@@ -79,6 +82,9 @@ func (t *Tuner) axes(r routes.Route, stands []stand) (all []axis) {
 			all = append(all, later(oneOf(t.Case.ReceiverTemperatures(), func(s *routes.Settings, c float64) { s.ReceiverC[k] = c })))
 		case steps.Forerun:
 			all = append(all, oneOf(t.Case.ColumnStages(), func(s *routes.Settings, n int) { s.Stages[k] = n }))
+			if pressures := t.Case.ForerunPressures(); len(pressures) > 1 && !r.Strips(i) {
+				all = append(all, later(oneOf(pressures, func(s *routes.Settings, kPa float64) { s.PressureKPa[k] = kPa })))
+			}
 		case steps.Soak:
 			all = append(all, oneOf(stands, func(s *routes.Settings, v stand) { s.SoakHours[k], s.Stirred[k] = v.hours, v.stirred }))
 		}

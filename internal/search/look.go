@@ -260,6 +260,7 @@ func (g *tuning) nearest(warm routes.Settings) spot {
 	copy(shape.Receiver, warm.Receiver)
 	copy(shape.ReceiverC, warm.ReceiverC)
 	copy(shape.CarrierDose, warm.CarrierDose)
+	copy(shape.PressureKPa, warm.PressureKPa)
 	for i, a := range g.axes {
 		for v := range a.count {
 			probe := cloned(shape)

@@ -56,7 +56,7 @@ func (t *Tuner) dominatedSalts(all []routes.Route) map[string]string {
 		}
 		seen[agent] = true
 		alone := routes.Route{{Kind: steps.Salt, Agent: agent}, {Kind: steps.Buy}} // not as the last step: the usual dose
-		run, err := t.Case.Run(alone, blank(alone))
+		run, err := t.Case.Run(alone, t.blank(alone))
 		if err != nil {
 			continue
 		}

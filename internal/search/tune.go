@@ -136,7 +136,7 @@ func (g *tuning) worthIt(warm *routes.Settings) *routes.Settings {
 }
 
 func (t *Tuner) prepare(r routes.Route) (*tuning, error) {
-	g := &tuning{t: t, route: r, blank: blank(r), places: places(r), best: trial{score: math.Inf(1)}}
+	g := &tuning{t: t, route: r, blank: t.blank(r), places: places(r), best: trial{score: math.Inf(1)}}
 	for _, place := range g.places {
 		lo, hi, err := t.handOverRange(r, place)
 		if err != nil {
@@ -181,7 +181,7 @@ func (t *Tuner) handOverRange(r routes.Route, place int) (lo, hi float64, err er
 func (t *Tuner) driest(head routes.Route) (run routes.Run, err error) {
 	stages := t.Case.ColumnStages()
 	for i := len(stages) - 1; i >= 0; i-- {
-		s := blank(head)
+		s := t.blank(head)
 		for k := range s.Stages {
 			s.Stages[k] = stages[i]
 		}

@@ -137,6 +137,24 @@ func RunForerun(eq *ForerunEquilibrium, feed Lot, goal float64, rig ForerunRig, 
 	return d.outcome(feed, goal), nil
 }
 
+// CheckForerun says whether a lot can be brought to the boil and drawn over at all,
+// or why it cannot.
+func CheckForerun(eq *ForerunEquilibrium, feed Lot, rig ForerunRig, rules ForerunRules) error {
+	d := drawing{eq: eq, m: eq.Mixture, rig: rig, rules: rules}
+	if err := d.check(feed); err != nil {
+		return err
+	}
+	return d.start(feed)
+}
+
+// Overhead reports whether the solvent of a lot is the more volatile, so that what
+// is drawn off is the product.
+func (eq *ForerunEquilibrium) Overhead(feed Lot) bool {
+	x := eq.Mixture.MoleFraction(feed.Water())
+	v, err := eq.vapour(x, eq.DryK)
+	return err == nil && eq.Azeotrope.Kind == thermo.NoAzeotrope && v.YWater < x
+}
+
 // drawing is one charge under distillation.
 type drawing struct {
 	eq    *ForerunEquilibrium

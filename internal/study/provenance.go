@@ -154,6 +154,9 @@ func (p *shelf) solvent(s *catalog.Solvent) {
 	if s.Water != nil {
 		p.note("water + "+s.Name+": activity model", "quality "+s.Water.Quality, s.Water.Origin)
 	}
+	if s.HottestPot != nil {
+		p.value(s.Name+": hottest pot", *s.HottestPot)
+	}
 	p.value(s.Name+": mixing rate of a still vessel", s.StillRate)
 	p.note(s.Name+": hazards", s.Hazards.PeroxideNote, s.Hazards.Origin)
 }
