@@ -313,3 +313,24 @@ func TestLinksAndSpecialFiles(t *testing.T) {
 		t.Error("a dangling link was written through")
 	}
 }
+
+// A hundred times the draws take no more than some megabytes more.
+func TestMemoryWithAHundredTimesTheDraws(t *testing.T) {
+	w := newWorkplace(t)
+	peak := func(draws string) int64 {
+		cmd := w.command("compare", "job.yaml", "--force", "--workbook", "plan.xlsx", "--draws", draws)
+		if out, err := cmd.CombinedOutput(); err != nil {
+			t.Fatalf("%v: %s", err, out)
+		}
+		usage, ok := cmd.ProcessState.SysUsage().(*syscall.Rusage)
+		if !ok {
+			t.Skip("no account of the memory on this system")
+		}
+		return usage.Maxrss
+	}
+	few, many := peak("200"), peak("20000")
+	t.Logf("%d and %d", few, many)
+	if many > 4*few {
+		t.Errorf("200 draws take %d of memory at most, 20 000 draws %d", few, many)
+	}
+}
