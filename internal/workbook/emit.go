@@ -23,6 +23,9 @@ type file struct {
 	grids          []*grid
 	names          []definedName
 	drawn          map[string][]cell // what the charts refer to
+	emitter        *emitter
+	texts          *texts
+	room           []byte // used for one sheet after the other
 }
 
 // write checks everything, then writes the package.
@@ -38,15 +41,21 @@ func (w *file) write(out io.Writer) (err error) {
 	if err := w.prepare(f); err != nil {
 		return err
 	}
-	e := emitter{file: f, styles: map[styled]int{}, overlays: map[look]int{}}
+	if err := f.SetCellStr(w.grids[0].name, "A1", ""); err != nil { // makes the part that holds the texts
+		return err
+	}
+	w.emitter = &emitter{file: f, styles: map[styled]int{}, overlays: map[look]int{}}
+	w.texts = gather(w.grids)
+	if err := w.emitter.setStyles(w.grids); err != nil {
+		return err
+	}
 	if err := w.lookUpDrawn(); err != nil {
 		return err
 	}
 	for _, g := range w.grids {
-		if err := e.sheet(g); err != nil {
+		if err := w.emitter.sheet(g); err != nil {
 			return fmt.Errorf("sheet %s: %w", g.name, err)
 		}
-		g.rows = nil // written: a large workbook would not fit twice
 	}
 	return f.Write(out)
 }
@@ -123,18 +132,11 @@ func (e *emitter) sheet(g *grid) error {
 	if err != nil {
 		return err
 	}
-	for i, width := range g.widths {
-		if err := sw.SetColWidth(i+1, i+1, width); err != nil {
-			return err
-		}
+	if err := widths(sw, g.widths); err != nil {
+		return err
 	}
 	if g.frozenRows > 0 {
 		if err := sw.SetPanes(panes(g)); err != nil {
-			return err
-		}
-	}
-	for i := range max(g.last(), g.drawnTo()) { // rows under charts too, so that their height is known
-		if err := e.row(sw, g, i+1); err != nil {
 			return err
 		}
 	}
@@ -156,6 +158,22 @@ func (e *emitter) sheet(g *grid) error {
 	return sw.Flush()
 }
 
+// widths sets those of columns that follow each other and are alike at once. The
+// writer puts the last one first.
+func widths(sw *excelize.StreamWriter, list []float64) error {
+	for last := len(list); last > 0; {
+		first := last
+		for first > 1 && list[first-2] == list[last-1] {
+			first--
+		}
+		if err := sw.SetColWidth(first, last, list[last-1]); err != nil {
+			return err
+		}
+		last = first - 1
+	}
+	return nil
+}
+
 func panes(g *grid) *excelize.Panes {
 	corner := at(g.frozenColumns+1, g.frozenRows+1)
 	p := &excelize.Panes{Freeze: true, XSplit: g.frozenColumns, YSplit: g.frozenRows, TopLeftCell: corner, ActivePane: "bottomLeft"}
@@ -166,30 +184,23 @@ func panes(g *grid) *excelize.Panes {
 	return p
 }
 
-func (e *emitter) row(sw *excelize.StreamWriter, g *grid, row int) error {
-	var cells []cell
-	if row <= len(g.rows) {
-		cells = g.rows[row-1]
+// setStyles gives all cells their styles, in the order of the sheets.
+func (e *emitter) setStyles(grids []*grid) error {
+	for _, g := range grids {
+		for _, row := range g.rows {
+			for c := range row {
+				x := &row[c]
+				if x.nothing() {
+					continue
+				}
+				var err error
+				if x.style, err = e.style(styled{x.look, x.format, x.isNumber() || x.right}); err != nil {
+					return err
+				}
+			}
+		}
 	}
-	values := make([]any, len(cells))
-	for i, c := range cells {
-		if c == (cell{}) {
-			continue
-		}
-		id, err := e.style(styled{c.look, c.format, c.isNumber() || c.right})
-		if err != nil {
-			return err
-		}
-		value := c.value
-		if s, ok := value.(string); ok {
-			value = clean(s)
-		}
-		if v, ok := value.(float64); ok && c.formula != "" {
-			value = cutTo(v, storedDigits)
-		}
-		values[i] = excelize.Cell{StyleID: id, Formula: c.formula, Value: value}
-	}
-	return sw.SetRow(at(1, row), values, excelize.RowOpts{Height: g.height(row)})
+	return nil
 }
 
 func (e *emitter) style(s styled) (int, error) {

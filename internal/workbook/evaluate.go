@@ -12,12 +12,12 @@ import (
 // evaluator computes the formulas of sheets in the sheets' own arithmetic, so that
 // what a cell shows before anybody recalculates is what a recalculation gives.
 type evaluator struct {
-	grids   map[string]*grid
-	names   map[string]ref
-	running map[*cell]bool
-	faults  map[*cell]fault          // of cells that cannot be computed
-	rowsOf  map[string]map[any][]int // of SUMIFS and COUNTIF: rows of a column by what stands in them
-	failed  error
+	grids  map[string]*grid
+	names  map[string]ref
+	parser *parser
+	faults map[*cell]fault          // of cells that cannot be computed
+	rowsOf map[string]map[any][]int // of SUMIFS and COUNTIF: rows of a column by what stands in them
+	failed error
 }
 
 // ref is an area of a sheet.
@@ -38,7 +38,7 @@ const (
 )
 
 func newEvaluator(grids []*grid, names []definedName) (*evaluator, error) {
-	e := &evaluator{grids: map[string]*grid{}, names: map[string]ref{}, running: map[*cell]bool{}, faults: map[*cell]fault{}, rowsOf: map[string]map[any][]int{}}
+	e := &evaluator{grids: map[string]*grid{}, names: map[string]ref{}, parser: newParser(), faults: map[*cell]fault{}, rowsOf: map[string]map[any][]int{}}
 	for _, g := range grids {
 		e.grids[g.name] = g
 	}
@@ -86,21 +86,26 @@ func (e *evaluator) cell(g *grid, column, row int) any {
 	if x.value != nil || x.formula == "" {
 		return x.value
 	}
-	if f, bad := e.faults[x]; bad {
-		return f
+	if len(e.faults) > 0 {
+		if f, bad := e.faults[x]; bad {
+			return f
+		}
 	}
-	if e.running[x] {
+	if x.running {
 		e.fail(fmt.Errorf("sheet %s, cell %s depends on itself", g.name, at(column, row)))
 		return outOfArea
 	}
-	e.running[x] = true
-	n, err := parseFormula(x.formula)
-	if err != nil {
-		e.fail(fmt.Errorf("sheet %s, cell %s: %w", g.name, at(column, row), err))
-		e.faults[x] = noValue
-		return noValue
+	if x.tree == nil {
+		var err error
+		if x.tree, err = e.parser.parse(x.formula, column, row); err != nil {
+			e.fail(fmt.Errorf("sheet %s, cell %s: %w", g.name, at(column, row), err))
+			e.faults[x] = noValue
+			return noValue
+		}
 	}
-	v := e.single(e.eval(n, g))
+	x.running = true
+	v := e.single(e.eval(x.tree, spot{g, column, row}))
+	x.running = false
 	switch y := v.(type) {
 	case bool:
 		v = number01(y)
@@ -116,7 +121,6 @@ func (e *evaluator) cell(g *grid, column, row int) any {
 	} else {
 		x.value = v
 	}
-	delete(e.running, x)
 	return v
 }
 
@@ -126,6 +130,12 @@ func (e *evaluator) fail(err error) {
 	}
 }
 
+// spot is the cell whose formula is computed.
+type spot struct {
+	g           *grid
+	column, row int
+}
+
 // array is a block of values, row by row.
 type array struct {
 	columns int
@@ -133,21 +143,22 @@ type array struct {
 }
 
 // eval gives nil, float64, string, bool, fault, ref or array.
-func (e *evaluator) eval(n *node, g *grid) any {
+func (e *evaluator) eval(n *node, here spot) any {
 	switch n.op {
 	case "number":
 		return n.value
 	case "text":
 		return n.text
 	case "area":
-		to := g
+		to := here.g
 		if n.sheet != "" {
 			if to = e.grids[n.sheet]; to == nil {
 				e.fail(fmt.Errorf("no sheet %s", n.sheet))
 				return outOfArea
 			}
 		}
-		return ref{to, n.place}
+		c, r := n.place.from(here.column, here.row)
+		return ref{to, bounds{c, r, c, r}}
 	case "name":
 		r, ok := e.names[n.text]
 		if !ok {
@@ -156,18 +167,38 @@ func (e *evaluator) eval(n *node, g *grid) any {
 		}
 		return r
 	case ":":
-		a, ok1 := e.eval(n.args[0], g).(ref)
-		b, ok2 := e.eval(n.args[1], g).(ref)
+		a, ok1 := e.eval(n.args[0], here).(ref)
+		b, ok2 := e.eval(n.args[1], here).(ref)
 		if !ok1 || !ok2 || a.g != b.g {
 			return outOfArea
 		}
 		return ref{a.g, bounds{min(a.c1, b.c1), min(a.r1, b.r1), max(a.c2, b.c2), max(a.r2, b.r2)}}
 	case "negative":
-		return e.spread(func(x []any) any { return arithmetic("-", 0.0, x[0]) }, e.eval(n.args[0], g))
+		return e.spread(func(x []any) any { return arithmetic("-", 0.0, x[0]) }, e.eval(n.args[0], here))
 	case "call":
-		return e.call(n, g)
+		return e.call(n, here)
 	}
-	return e.spread(func(x []any) any { return operate(n.op, x[0], x[1]) }, e.eval(n.args[0], g), e.eval(n.args[1], g))
+	a, b := e.eval(n.args[0], here), e.eval(n.args[1], here)
+	if x, ok := e.alone(a); ok {
+		if y, ok := e.alone(b); ok {
+			return operate(n.op, x, y)
+		}
+	}
+	return e.spread(func(x []any) any { return operate(n.op, x[0], x[1]) }, a, b)
+}
+
+// alone is a value that is no block.
+func (e *evaluator) alone(v any) (any, bool) {
+	switch x := v.(type) {
+	case ref:
+		if x.c1 != x.c2 || x.r1 != x.r2 {
+			return nil, false
+		}
+		return e.cell(x.g, x.c1, x.r1), true
+	case array:
+		return nil, false
+	}
+	return v, true
 }
 
 // spread applies a function of single values to blocks, place by place.
@@ -177,11 +208,7 @@ func (e *evaluator) spread(f func([]any) any, args ...any) any {
 	for i, a := range args {
 		switch x := a.(type) {
 		case ref:
-			if x.c1 == x.c2 && x.r1 == x.r2 {
-				blocks[i] = array{1, []any{e.cell(x.g, x.c1, x.r1)}}
-			} else {
-				blocks[i] = e.block(x)
-			}
+			blocks[i] = e.block(x)
 		case array:
 			blocks[i] = x
 		default:
@@ -213,7 +240,8 @@ func (e *evaluator) spread(f func([]any) any, args ...any) any {
 }
 
 func (e *evaluator) block(r ref) array {
-	out := array{columns: r.c2 - r.c1 + 1}
+	columns := r.c2 - r.c1 + 1
+	out := array{columns, make([]any, 0, columns*(r.r2-r.r1+1))}
 	for row := r.r1; row <= r.r2; row++ {
 		for column := r.c1; column <= r.c2; column++ {
 			out.values = append(out.values, e.cell(r.g, column, row))
@@ -245,10 +273,11 @@ func number01(b bool) float64 {
 
 // operate applies an operator to single values.
 func operate(op string, a, b any) any {
-	for _, x := range []any{a, b} {
-		if f, bad := x.(fault); bad {
-			return f
-		}
+	if f, bad := a.(fault); bad {
+		return f
+	}
+	if f, bad := b.(fault); bad {
+		return f
 	}
 	switch op {
 	case "&":

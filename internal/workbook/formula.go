@@ -4,8 +4,6 @@ import (
 	"fmt"
 	"strconv"
 	"strings"
-
-	"github.com/xuri/excelize/v2"
 )
 
 // A formula is read into a tree once. Grammar, the loosest binding first:
@@ -20,32 +18,64 @@ import (
 //
 // The minus binds looser than ^ here, where sheets bind it tighter; the workbook
 // writes no formula in which that matters.
+//
+// Places that are not fixed with $ are kept as offsets from the cell that holds the
+// formula, so that the cells of a column that hold one formula share its tree.
 type node struct {
 	op    string // an operator, "number", "text", "call", "area" or "name"
 	text  string // of a text, a call or a name
 	value float64
 	args  []*node
 	sheet string // of an area, "" for the own
-	place bounds
+	place place
+}
+
+// place is a cell in a formula, each coordinate fixed or an offset.
+type place struct {
+	column, row           int
+	fixedColumn, fixedRow bool
+}
+
+// from is the cell that a place stands for in a formula of the given cell.
+func (p place) from(column, row int) (int, int) {
+	if p.fixedColumn {
+		column = 0
+	}
+	if p.fixedRow {
+		row = 0
+	}
+	return column + p.column, row + p.row
 }
 
 // bounds are the first and last column and row of an area.
 type bounds struct{ c1, r1, c2, r2 int }
 
+// parser reads formulas; those that are the same but for the cell they stand in are
+// read once.
 type parser struct {
-	tokens []string
-	at     int
+	trees       map[string]*node // by the formula with its places as offsets
+	tokens      []string
+	at          int
+	column, row int // of the cell
+	key         []byte
 }
 
-func parseFormula(s string) (*node, error) {
-	p := &parser{}
+func newParser() *parser { return &parser{trees: map[string]*node{}} }
+
+// parse reads the formula of a cell.
+func (p *parser) parse(s string, column, row int) (*node, error) {
+	p.tokens, p.key, p.at, p.column, p.row = p.tokens[:0], p.key[:0], 0, column, row
 	for rest := s; rest != ""; {
 		n := tokenLength(rest)
 		if n == 0 {
 			return nil, fmt.Errorf("formula %q: cannot read %q", s, rest)
 		}
 		p.tokens = append(p.tokens, rest[:n])
+		p.key = p.addKey(p.key, rest[:n])
 		rest = strings.TrimLeft(rest[n:], " ")
+	}
+	if n := p.trees[string(p.key)]; n != nil {
+		return n, nil
 	}
 	n, err := p.binary(0)
 	if err == nil && p.at < len(p.tokens) {
@@ -54,7 +84,26 @@ func parseFormula(s string) (*node, error) {
 	if err != nil {
 		return nil, fmt.Errorf("formula %q: %w", s, err)
 	}
+	p.trees[string(p.key)] = n
 	return n, nil
+}
+
+// addKey adds a token to the key, a cell as its offset.
+func (p *parser) addKey(key []byte, token string) []byte {
+	x, ok := placeOf(token, p.column, p.row)
+	if !ok {
+		return append(append(key, token...), ' ')
+	}
+	for _, part := range []struct {
+		at    int
+		fixed bool
+	}{{x.column, x.fixedColumn}, {x.row, x.fixedRow}} {
+		key = strconv.AppendInt(append(key, '['), int64(part.at), 10)
+		if part.fixed {
+			key = append(key, '$')
+		}
+	}
+	return append(key, ' ')
 }
 
 // tokenLength is how many bytes the first token of a formula has; 0 for none.
@@ -214,7 +263,10 @@ func (p *parser) atom() (*node, error) {
 		v, err := strconv.ParseFloat(t, 64)
 		return &node{op: "number", value: v}, err
 	}
-	return place(t)
+	if x, ok := placeOf(t, p.column, p.row); ok {
+		return &node{op: "area", place: x}, nil
+	}
+	return nil, fmt.Errorf("%q is no cell", t)
 }
 
 func (p *parser) close(err error) error {
@@ -241,8 +293,33 @@ func (p *parser) call(name string) (*node, error) {
 	}
 }
 
-// place reads a cell such as $C$7.
-func place(t string) (*node, error) {
-	c, r, err := excelize.CellNameToCoordinates(strings.ReplaceAll(t, "$", ""))
-	return &node{op: "area", place: bounds{c, r, c, r}}, err
+// placeOf reads a cell such as $C$7; ok is false for other words.
+func placeOf(t string, column, row int) (x place, ok bool) {
+	i, digits := 0, 0
+	if x.fixedColumn = i < len(t) && t[i] == '$'; x.fixedColumn {
+		i++
+	}
+	letters := i
+	for ; i < len(t) && t[i] >= 'A' && t[i] <= 'Z'; i++ {
+		x.column = x.column*26 + int(t[i]-'A') + 1
+	}
+	if letters = i - letters; letters < 1 || letters > 3 {
+		return x, false
+	}
+	if x.fixedRow = i < len(t) && t[i] == '$'; x.fixedRow {
+		i++
+	}
+	for ; i < len(t) && t[i] >= '0' && t[i] <= '9'; i++ {
+		x.row, digits = x.row*10+int(t[i]-'0'), digits+1
+	}
+	if i < len(t) || digits < 1 || digits > 7 {
+		return x, false
+	}
+	if !x.fixedColumn {
+		x.column -= column
+	}
+	if !x.fixedRow {
+		x.row -= row
+	}
+	return x, true
 }

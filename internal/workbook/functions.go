@@ -10,26 +10,26 @@ import (
 )
 
 // call evaluates a function of the list that the workbook keeps to.
-func (e *evaluator) call(n *node, g *grid) any {
+func (e *evaluator) call(n *node, here spot) any {
 	switch n.text {
 	case "IF":
-		return e.choose(n, g)
+		return e.choose(n, here)
 	case "IFERROR":
-		v := e.eval(n.args[0], g)
+		v := e.eval(n.args[0], here)
 		if _, bad := e.single(v).(fault); bad {
-			return e.eval(n.args[1], g)
+			return e.eval(n.args[1], here)
 		}
 		return v
 	case "INDEX":
-		return e.index(n, g)
+		return e.index(n, here)
 	case "MATCH":
-		return e.match(e.single(e.eval(n.args[0], g)), e.eval(n.args[1], g), e.single(e.eval(n.args[2], g)))
+		return e.match(e.single(e.eval(n.args[0], here)), e.eval(n.args[1], here), e.single(e.eval(n.args[2], here)))
 	case "SUMIFS", "COUNTIFS", "COUNTIF":
-		return e.conditional(n, g)
+		return e.conditional(n, here)
 	}
 	args := make([]any, len(n.args))
 	for i, a := range n.args {
-		args[i] = e.eval(a, g)
+		args[i] = e.eval(a, here)
 	}
 	if f, ok := ofOne[n.text]; ok {
 		return e.spread(func(x []any) any { return f(x[0]) }, args[0])
@@ -38,8 +38,8 @@ func (e *evaluator) call(n *node, g *grid) any {
 }
 
 // choose evaluates only the branch that holds, as sheets do.
-func (e *evaluator) choose(n *node, g *grid) any {
-	condition := e.single(e.eval(n.args[0], g))
+func (e *evaluator) choose(n *node, here spot) any {
+	condition := e.single(e.eval(n.args[0], here))
 	if f, bad := condition.(fault); bad {
 		return f
 	}
@@ -48,9 +48,9 @@ func (e *evaluator) choose(n *node, g *grid) any {
 	case !ok:
 		return noValue
 	case holds != 0:
-		return e.eval(n.args[1], g)
+		return e.eval(n.args[1], here)
 	case len(n.args) > 2:
-		return e.eval(n.args[2], g)
+		return e.eval(n.args[2], here)
 	}
 	return false
 }
@@ -224,8 +224,8 @@ func (e *evaluator) fold(name string, args []any) any {
 }
 
 // index is the cell of an area by its row and column, both counted from 1.
-func (e *evaluator) index(n *node, g *grid) any {
-	area, ok := e.eval(n.args[0], g).(ref)
+func (e *evaluator) index(n *node, here spot) any {
+	area, ok := e.eval(n.args[0], here).(ref)
 	if !ok {
 		return outOfArea
 	}
@@ -234,7 +234,7 @@ func (e *evaluator) index(n *node, g *grid) any {
 		if i+1 >= len(n.args) {
 			break
 		}
-		v := e.single(e.eval(n.args[i+1], g))
+		v := e.single(e.eval(n.args[i+1], here))
 		if f, bad := v.(fault); bad {
 			return f
 		}
@@ -289,22 +289,22 @@ func (e *evaluator) match(what, where, how any) any {
 
 // conditional are the functions that select rows by equality with a value, or by
 // a comparison such as ">0".
-func (e *evaluator) conditional(n *node, g *grid) any {
+func (e *evaluator) conditional(n *node, here spot) any {
 	rest, sum := n.args, ref{}
 	if n.text == "SUMIFS" {
 		var ok bool
-		if sum, ok = e.eval(n.args[0], g).(ref); !ok {
+		if sum, ok = e.eval(n.args[0], here).(ref); !ok {
 			return noValue
 		}
 		rest = rest[1:]
 	}
 	var criteria []criterion
 	for i := 0; i+1 < len(rest); i += 2 {
-		column, ok := e.eval(rest[i], g).(ref)
+		column, ok := e.eval(rest[i], here).(ref)
 		if !ok || column.c1 != column.c2 {
 			return noValue
 		}
-		criteria = append(criteria, criterion{column, e.rowsWith(column, e.single(e.eval(rest[i+1], g)))})
+		criteria = append(criteria, criterion{column, e.rowsWith(column, e.single(e.eval(rest[i+1], here)))})
 	}
 	sort.SliceStable(criteria, func(i, j int) bool { return len(criteria[i].rows) < len(criteria[j].rows) })
 	total := 0.0

@@ -19,6 +19,10 @@ type cell struct {
 	unit    string // unit of a number; "1" for a pure count
 	goTo    string // place in the workbook that a click leads to, "Costs!A7"
 	right   bool   // heading of a column of numbers
+
+	style   int   // of the file
+	tree    *node // of the formula, once it is read
+	running bool  // while the formula is computed
 }
 
 func (c cell) as(l look) cell            { c.look = l; return c }

@@ -12,6 +12,7 @@ import (
 	"regexp"
 	"slices"
 	"sort"
+	"strconv"
 	"strings"
 	"time"
 )
@@ -146,8 +147,11 @@ func (w *file) patchPart(name string, part []byte) ([]byte, error) {
 		return patchChart(part, w.drawnAt)
 	case strings.HasPrefix(name, "xl/drawings/drawing"):
 		return anchorBySize(part)
+	case name == "xl/sharedStrings.xml":
+		return w.texts.part(), nil
 	case strings.HasPrefix(name, "xl/worksheets/sheet"):
-		return bytes.ReplaceAll(part, []byte("<colBreaks></colBreaks>"), nil), nil // an empty list
+		part = bytes.ReplaceAll(part, []byte("<colBreaks></colBreaks>"), nil) // an empty list
+		return w.withCells(name, part)
 	}
 	return part, nil
 }
@@ -164,4 +168,24 @@ func sortDefaults(part []byte) []byte {
 		next++
 		return sorted[next-1]
 	})
+}
+
+// withCells is a sheet with its cells in it.
+func (w *file) withCells(name string, part []byte) ([]byte, error) {
+	no, err := strconv.Atoi(strings.TrimSuffix(strings.TrimPrefix(name, "xl/worksheets/sheet"), ".xml"))
+	if err != nil || no < 1 || no > len(w.grids) {
+		return nil, fmt.Errorf("no sheet is kept in it")
+	}
+	before, after, ok := bytes.Cut(part, []byte("<sheetData></sheetData>"))
+	if !ok {
+		return nil, fmt.Errorf("there is no place for the cells")
+	}
+	g := w.grids[no-1]
+	out := append(append(w.room[:0], before...), "<sheetData>"...)
+	if out, err = w.appendCells(out, g); err != nil {
+		return nil, err
+	}
+	g.rows = nil // written: a large workbook would not fit twice
+	w.room = append(append(out, "</sheetData>"...), after...)
+	return w.room, nil
 }
