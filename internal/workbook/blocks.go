@@ -2,6 +2,7 @@ package workbook
 
 import (
 	"fmt"
+	"strconv"
 	"strings"
 
 	"parch/internal/steps"
@@ -22,7 +23,7 @@ const (
 func common(formulas map[string]string) map[string]string {
 	all := map[string]string{
 		"W": "", "S": "", "win": "{W}/({S}+{W})*1000*1000", "wout": "{Wout}/({Sout}+{Wout})*1000*1000",
-		"goal": "IF({last}=1,{lot.goal},{handover}/1000/1000)",
+		"goal": "IF({atlimit}=1,{lot.goal},{handover}/1000/1000)",
 		"open": "{S}-{Sout}-({loss1}+{loss2}+{loss3})/1000*{lot.ds}",
 	}
 	for k, f := range formulas {
@@ -32,8 +33,8 @@ func common(formulas map[string]string) map[string]string {
 }
 
 // chain are the constants of a step that say how it is asked for.
-var chain = []liveColumn{{"last", "Last step", "1", ""}, {"setrow", "Row of its setting", "1", ""},
-	{"handover", "Hand-over", "mg/kg", "INDEX(input_values,{setrow})"}, {"w", "Water in", "kg/kg", "{W}/({S}+{W})"}}
+var chain = []liveColumn{{"last", "Last step", "1", ""}, {"atlimit", "Sized for the limit", "1", ""}, {"setrow", "Row of its setting", "1", ""},
+	{"handover", "Hand-over, or aim", "mg/kg", "INDEX(input_values,{setrow})"}, {"w", "Water in", "kg/kg", "{W}/({S}+{W})"}}
 
 func columnsOf(lists ...[]liveColumn) (out []liveColumn) {
 	for _, l := range lists {
@@ -217,15 +218,13 @@ func soakBlock() *liveBlock {
 		{"qa", "Held at the node", "kg/kg", "{cs}*INDEX(loading_held,{ka})"},
 		{"slope", "Slope of the loading", "1", "({cs}*INDEX(loading_held,MIN({ka}+1,{to}))-{qa})/(INDEX(loading_water,MIN({ka}+1,{to}))-{wa})"},
 		{"feasible", "A dose reaches it", "1", "({df}>={from})*({qa}+{slope}*({wb}-{wa})>{q0})*({wb}>{wa})"},
-		{"sa", "In time, node below", "kg", inTimeAt("wa")}, {"ga", "Over, node below", "kg", surplusAt("sa", "wa")}, {"gb", "Over, node above", "kg", "-{vol}*({qa}+{slope}*({wb}-{wa})-{q0})"},
-		{"ma", "Equilibrium, first", "kg/kg", "IFERROR({wa}+({wb}-{wa})*{ga}/({ga}-{gb}),{wa})"}, {"sm", "In time, first", "kg", inTimeAt("ma")}, {"gm", "Over, first", "kg", surplusAt("sm", "ma")},
-		{"mb", "Equilibrium, second", "kg/kg", "IFERROR({ma}+{gm}*(IF({gm}>0,{wb},{wa})-{ma})/({gm}-IF({gm}>0,{gb},{ga})),{ma})"}, {"sn", "In time, second", "kg", inTimeAt("mb")}, {"gn", "Over, second", "kg", surplusAt("sn", "mb")},
-		{"mc", "Equilibrium, third", "kg/kg", "IFERROR({mb}-{gn}*({mb}-{ma})/({gn}-{gm}),{mb})"}, {"so", "In time, third", "kg", inTimeAt("mc")}, {"go", "Over, third", "kg", surplusAt("so", "mc")},
-		{"md", "Equilibrium for the dose", "kg/kg", "IFERROR({mc}-{go}*({mc}-{mb})/({go}-{gn}),{mc})"},
-		{"exact", "Dose that reaches it", "kg/m3", "IFERROR({S}*({r0}-{md}/(1-{md}))/({qa}+{slope}*({md}-{wa})-{q0})/{vol},{most})"},
+		{"ktlow", "K t at the node below", "1", "IFERROR(LN(({w}-{wa})/({goal}-{wa})),0)"}, {"kthigh", "K t at most", "1", "IFERROR(LN(({w}-{wb})/({goal}-{wb})),1000)"},
+	}...)
+	own = append(own, rateForDose()...)
+	own = append(own, []liveColumn{
+		{"exact", "Dose that reaches it", "kg/m3", "IFERROR({S}*({r0}-{x6}/(1-{x6}))/({qa}+{slope}*({x6}-{wa})-{q0})/{vol},{most})"},
 		{"dose", "Dose", "kg/m3", "IF({feasible}=1,MIN({most},MAX(site_least_dose,{exact})),{most})"},
-		{"sd", "In time, at the dose", "kg", inTimeAt("md")}, {"gz", "Over, at the dose", "kg", surplusAt("sd", "md")},
-		{"solved", "Solved, or far under the least dose", "1", "MAX(1-{feasible},(ABS({gz})<={sd}*job_tie*1000*1000)*1,({exact}+{exact}<site_least_dose)*1)"},
+		{"solved", "Solved, or far under the least dose", "1", "MAX(1-{feasible},(ABS({g5}-{kt5})<={kt5}*job_tie*1000*1000)*1,({exact}+{exact}<site_least_dose)*1)"},
 		{"meets", "Dosed to reach it", "1", "{feasible}*({exact}>=site_least_dose)*({exact}<={most})"},
 		{"m", "Sieve", "kg", "{dose}*{vol}"}, {"all", "Water to share", "kg", "{S}*{r0}+{m}*{q0}"},
 	}...)
@@ -243,15 +242,37 @@ func soakBlock() *liveBlock {
 	}, sieveUses)), own)
 }
 
-// inTimeAt is the sorbent of the dose that time asks for, times what a kilogram of
-// it would have to hold; surplusAt is by how much that is more than it can hold. They
-// agree at the equilibrium sought.
-func inTimeAt(w string) string {
-	return strings.ReplaceAll("IFERROR({skb}*({r0}-{x}/(1-{x}))*({t}/LN(({w}-{x})/({goal}-{x}))-{rm}),0)", "{x}", "{"+w+"}")
-}
-
-func surplusAt(inTime, w string) string {
-	return fmt.Sprintf("{%s}-{vol}*({qa}+{slope}*({%s}-{wa})-{q0})", inTime, w)
+// rateForDose finds K t of the dose that reaches the goal in time. The equilibrium
+// that K t asks for is
+//
+//	x = (goal - w exp(-K t)) / (1 - exp(-K t))
+//
+// A dose in equilibrium with x holds m (q(x) - q0) = S (r0 - x/(1-x)), and with that
+// dose K t is t / (rm + vol/(kb m)). What K t leads to so falls as K t rises, and it
+// is sought where it leads to itself: by secants, which stay between the nodes.
+func rateForDose() (out []liveColumn) {
+	const secant = "IFERROR(MAX({ktlow},MIN({kthigh},{kt#}+({g#}-{kt#})/(1-({g#}-{g@})/({kt#}-{kt@})))),{g#})"
+	for i := 1; i <= 6; i++ {
+		next := strings.NewReplacer("#}", fmt.Sprintf("%d}", i-1), "@}", fmt.Sprintf("%d}", i-2)).Replace(secant)
+		if i <= 2 {
+			next = []string{"{kthigh}", "MAX({ktlow},{g1})"}[i-1]
+		}
+		point := []liveColumn{
+			{"kt#", "K t, try #", "1", next},
+			{"x#", "Equilibrium, try #", "kg/kg", "({goal}-{w}*EXP(-{kt#}))/(1-EXP(-{kt#}))"},
+			{"n#", "Water to take, times beads", "m3 kg/s", "{skb}*({r0}-{x#}/(1-{x#}))"},
+			{"d#", "The same over K", "m3", "{n#}*{rm}+{vol}*({qa}+{slope}*({x#}-{wa})-{q0})"},
+			{"g#", "Leads to K t", "1", "IF({d#}>0,MIN({kthigh},{n#}*{t}/{d#}),{kthigh})"},
+		}
+		if i == 6 {
+			point = point[:2]
+		}
+		for _, c := range point {
+			at := strings.NewReplacer("#", strconv.Itoa(i))
+			out = append(out, liveColumn{at.Replace(c.key), at.Replace(c.name), c.unit, at.Replace(c.formula)})
+		}
+	}
+	return out
 }
 
 var halves = []string{"a", "b", "c", "d", "e", "f"} // of the nodes of a curve: 2 to that many

@@ -90,8 +90,14 @@ func (g *grid) shares() [][]rows {
 	return out
 }
 
-// nothing is a cell that is not written.
-func (c *cell) nothing() bool { return c.value == nil && c.formula == "" && c.look == plain }
+// nothing is an empty cell that looks like one that is not there.
+func (c *cell) nothing() bool {
+	if c.value != nil || c.formula != "" {
+		return false
+	}
+	p := paints[c.look]
+	return p.paper == white && !p.outlined && !p.unlocked
+}
 
 // widest is the row with the most cells.
 func (g *grid) widest() (row []cell) {
@@ -106,6 +112,10 @@ func (g *grid) widest() (row []cell) {
 // appendCells adds the rows of a grid as a sheet holds them.
 func (w *file) appendCells(out []byte, g *grid) ([]byte, error) {
 	shared, next, ids := g.shares(), make([]int, len(g.widest())), 0
+	digits := storedDigits
+	if g.exact {
+		digits = significantDigits
+	}
 	id := make([]int, len(next)) // of the formula that a column shares
 	names := make([]string, len(next))
 	for c := range names {
@@ -144,7 +154,7 @@ func (w *file) appendCells(out []byte, g *grid) ([]byte, error) {
 				}
 			}
 			var err error
-			if out, err = appendFormula(out, x, f); err != nil {
+			if out, err = appendFormula(out, x, f, digits); err != nil {
 				return nil, err
 			}
 		}
@@ -175,7 +185,7 @@ func (w *file) appendValue(out []byte, x *cell) []byte {
 }
 
 // appendFormula adds a formula and what it gives.
-func appendFormula(out []byte, x *cell, f sharing) ([]byte, error) {
+func appendFormula(out []byte, x *cell, f sharing, digits int) ([]byte, error) {
 	s, isText := x.value.(string)
 	v, isNumber := x.value.(float64)
 	switch {
@@ -198,7 +208,7 @@ func appendFormula(out []byte, x *cell, f sharing) ([]byte, error) {
 	if isText {
 		out = appendText(out, clean(s))
 	} else {
-		out = strconv.AppendFloat(out, cutTo(v, storedDigits), 'G', -1, 64)
+		out = strconv.AppendFloat(out, cutTo(v, digits), 'G', -1, 64)
 	}
 	return append(out, "</v></c>"...), nil
 }

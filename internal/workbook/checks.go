@@ -28,6 +28,7 @@ type test struct {
 func (l *layout) checks() *grid {
 	g := newGrid(sheetChecks, "Found and expected must agree within the tolerance. The sum of the flags is 0 when all checks hold.",
 		tabCheck, cell{look: message, formula: "check_message", value: checksHold}, 10, 74, 15, 15, 15, 12, 12, 8, 15)
+	g.exact = true
 	first := frameRows + 8
 	g.table(first-2, "Always checked", checkColumns)
 	g.frozenRows = first - 1
@@ -236,18 +237,16 @@ func (l *layout) rankTests() (tests []test) {
 	return tests
 }
 
-// programTests compare the sheet with what the program computed by itself.
+// programTests compare the sheet with what the program computed by itself, which
+// stands beside it.
 func (l *layout) programTests() (tests []test) {
-	for i, r := range l.routes {
-		litre, rank := l.litreRows.at(i), l.rankRows.at(i)
-		name := fmt.Sprintf("Route %d, %s: ", r.no, r.ID)
-		tests = append(tests,
-			test{name + "cost per batch", derived(on(sheetCosts, at(litreTotal, litre)), r.total).shown(moneyFormat),
-				number(float(r.Bill.PerBatch), l.currency()).shown(moneyFormat), moneyTolerance, l.currency()},
-			test{name + "cost per litre", derived(on(sheetCosts, at(litreCost, litre)), r.perLitre).shown(moneyFormat),
-				number(float(r.Bill.PerLitre), l.money("L")).shown(moneyFormat), moneyTolerance, l.money("L")},
-			test{name + "rank, 0 where the target is missed", derived(on(sheetCosts, at(rankPlace, rank)), float64(r.rank)).shown("0"),
-				count(r.Rank), 0, "rank"})
+	off := func(what string, rr rows, sheet, run int, tolerance float64) test {
+		a, b := on(sheetCosts, rr.column(sheet)), on(sheetCosts, rr.column(run))
+		return test{"Routes whose " + what + " is not that of the program", whole(fmt.Sprintf("SUMPRODUCT((ABS(%s-%s)>%s)*1)", a, b, ownTolerance), 0), none(), tolerance, "routes"}
 	}
-	return tests
+	if len(l.routes) == 0 {
+		return nil
+	}
+	return []test{off("cost per batch", l.litreRows, litreTotal, litreRunTotal, moneyTolerance),
+		off("cost per litre", l.litreRows, litreCost, litreRunCost, moneyTolerance), off("rank", l.rankRows, rankPlace, rankRun, 0)}
 }

@@ -9,23 +9,22 @@ import (
 
 // Columns of the bill.
 const (
-	billHead    = 4
-	billStep    = 5
-	billItem    = 6
-	billQty     = 7
-	billUnit    = 8
-	billPer     = 9
-	billShared  = 10
-	billBatch   = 11
-	billPrice   = 12
-	billAmount  = 13
-	billPerUnit = 14
-	billBasis   = 15
-	billPlace   = 16 // of the quantity on Steps
-	billColumn  = 17
-	billTimes   = 18
-	billFactor  = 19
-	billCarbon  = 20
+	billHead   = 4
+	billStep   = 5
+	billItem   = 6
+	billQty    = 7
+	billUnit   = 8
+	billPer    = 9
+	billShared = 10
+	billBatch  = 11
+	billPrice  = 12
+	billAmount = 13
+	billBasis  = 14
+	billPlace  = 15 // of the quantity on Steps
+	billColumn = 16
+	billTimes  = 17
+	billFactor = 18
+	billCarbon = 19
 )
 
 // Columns of the blocks below the bill.
@@ -44,6 +43,8 @@ const (
 	litreCooling   = 13
 	litreLost      = 14
 	litreCarbon    = 15
+	litreRunTotal  = 16
+	litreRunCost   = 17
 
 	rankLot       = 3
 	rankWater     = 4
@@ -55,6 +56,7 @@ const (
 	rankAhead     = 10 // three columns
 	rankPlace     = 13
 	rankSharing   = 14
+	rankRun       = 15
 )
 
 var headNames = map[steps.Head]string{
@@ -64,7 +66,7 @@ var headNames = map[steps.Head]string{
 
 func (l *layout) costs() *grid {
 	g := newGrid(sheetCosts, "The bill of each route: quantity × price = amount, for one batch. Below the lines: cost by head, cost per litre, target and rank. Amounts are exact and shown to a hundredth of a cent; the bill is rounded once, where it is written to the cent.",
-		tabWork, checkCell(), 26, 30, 10, 13, 12, 17, 11, 11, 11, 11, 11, 11, 11, 11, 52, 9, 9, 12, 11, 11)
+		tabWork, checkCell(), 26, 30, 10, 13, 12, 17, 11, 11, 11, 11, 11, 11, 11, 52, 9, 9, 12, 11, 11)
 	g.printColumns = billBasis
 	g.mixed, g.frozenRows, g.frozenColumns = true, frameRows, 3 // the blocks share only these columns
 	l.billBlock(g)
@@ -81,8 +83,9 @@ func (l *layout) costs() *grid {
 func (l *layout) billBlock(g *grid) {
 	first := g.table(frameRows+2, "Lines of the bill", []column{{name: "Lot"}, {name: "Route id"}, {"Route no", "1"}, {name: "Head"}, {"Step, 0 for the route", "1"},
 		{name: "Item"}, {"Quantity", "1"}, {name: "Unit"}, {name: "Counted per"}, {"Shared by", "batches"}, {"Quantity per batch", "1"},
-		{"Unit price", "1"}, {"Amount", l.currency()}, {name: "Unit of the price"}, {name: "Basis"},
+		{"Price of a unit", l.currency()}, {"Amount", l.currency()}, {name: "Basis"},
 		{"Row on Steps", "1"}, {"Column on Steps", "1"}, {"Times", "1"}, {"Emissions of a unit", "kg CO2e"}, {"Emissions", "kg CO2e"}})
+	l.names = append(l.names, definedName{"steps_uses", l.usesArea()})
 	row := first
 	for _, r := range l.routes {
 		for _, line := range r.lines {
@@ -103,12 +106,12 @@ func (l *layout) billRow(g *grid, row int, r *routeModel, line lineModel) {
 	g.putRow(row, append(l.routeKey(r),
 		text(plain, headNames[line.Head]), count(line.Step), text(words, line.Item),
 		cell{look: formula, unit: symbol(line.Unit), format: quantity,
-			formula: fmt.Sprintf("INDEX(%s,%s,%s)*%s", l.usesArea(), at(billPlace, row), at(billColumn, row), at(billTimes, row))}, text(plain, symbol(line.Unit)), text(plain, per),
+			formula: fmt.Sprintf("INDEX(steps_uses,%s,%s)*%s", at(billPlace, row), at(billColumn, row), at(billTimes, row))}, text(plain, symbol(line.Unit)), text(plain, per),
 		derived(fmt.Sprintf(`IF(%s="year",%s,1)`, at(billPer, row), l.lotName(r.lot, "batches_per_year")), line.shared).shown(formatFor(line.shared)),
 		derived(at(billQty, row)+"/"+at(billShared, row), line.perBatch).in(symbol(line.Unit)).shown(quantity),
 		derived(priceName(line.Item, line.Unit), line.price).in(l.money(line.Unit)).shown(l.priceFormat()),
 		derived(at(billBatch, row)+"*"+at(billPrice, row), line.amount).in(l.currency()).shown(exactMoney),
-		text(plain, l.money(line.Unit)), text(words, line.Basis))...)
+		text(words, line.Basis))...)
 	place, column, times, _ := l.useOf(r, line)
 	g.put(billPlace, row, count(place-l.lotRows.rows.first+1))
 	g.put(billColumn, row, count(column))
@@ -204,7 +207,8 @@ func (l *layout) writtenBlock(g *grid) {
 func (l *layout) litreBlock(g *grid) {
 	first := g.table(g.next(), "Cost per litre and per year, use of a batch", []column{{name: "Lot"}, {name: "Route id"}, {"Route no", "1"},
 		{"Cost per batch", l.currency()}, {"Litres delivered", "L"}, {"Cost per litre", l.money("L")}, {"Hours total", "h"}, {"Waste", "kg"},
-		{"Energy", "kWh"}, {"Batches per year", "1/yr"}, {"Cost per year", l.currency()}, {"Hours attended", "h"}, {"Cooling water", "m3"}, {"Solvent lost", "L"}, {"Emissions", "kg CO2e"}})
+		{"Energy", "kWh"}, {"Batches per year", "1/yr"}, {"Cost per year", l.currency()}, {"Hours attended", "h"}, {"Cooling water", "m3"}, {"Solvent lost", "L"}, {"Emissions", "kg CO2e"},
+		{"Batch, of the program", l.currency()}, {"Litre, of the program", l.money("L")}})
 	l.litreRows = rows{first, first + len(l.routes) - 1}
 	routeNos, quantities := l.lineRows.column(3), l.lineRows.column(billBatch)
 	for i, r := range l.routes {
@@ -232,7 +236,8 @@ func (l *layout) litreBlock(g *grid) {
 			live(sum(quantities, items, "technician"), "h", 3),
 			live(sum(quantities, items, "cooling-water"), "m3", 4),
 			live(sum(quantities, heads, headNames[steps.SolventLost]), "L", 3),
-			live(sum(l.lineRows.column(billCarbon)), "kg CO2e", 2))...)
+			live(sum(l.lineRows.column(billCarbon)), "kg CO2e", 2),
+			number(float(r.Bill.PerBatch), l.currency()).shown(exactMoney), number(float(r.Bill.PerLitre), l.money("L")).shown(exactMoney))...)
 	}
 	l.noRoutes(g, first, len(l.routes))
 }
@@ -241,7 +246,7 @@ func (l *layout) rankBlock(g *grid) {
 	first := g.table(g.next(), "Target and rank: routes of a lot that reach the target, by objective, then cost per litre, then route id", []column{
 		{name: "Lot"}, {name: "Route id"}, {"Lot no", "1"}, {"Water out", "mg/kg"}, {"Acceptance limit", "mg/kg"}, {name: "Reaches target"},
 		{"Ranked in lot no", "1"}, {"Objective value", "1"}, {"Order of the route id", "1"}, {"Ahead by objective", "1"},
-		{"Level, ahead by cost", "1"}, {"Level, ahead by id", "1"}, {"Rank, 0 for none", "1"}, {"Routes with this rank", "1"}})
+		{"Level, ahead by cost", "1"}, {"Level, ahead by id", "1"}, {"Rank, 0 for none", "1"}, {"Routes with this rank", "1"}, {"Rank, of the program", "1"}})
 	l.rankRows = rows{first, first + len(l.routes) - 1}
 	water := l.waterFormat()
 	for i, r := range l.routes {
@@ -281,6 +286,7 @@ func (l *layout) placeCells(g *grid, row, litre int, r *routeModel) {
 	g.put(rankAhead+2, row, whole(fmt.Sprintf("SUMPRODUCT(%s*(%s<I%d))", level, ranked(rankOrder), row), r.ahead[2]))
 	g.put(rankPlace, row, whole(fmt.Sprintf(`IF(F%d="yes",1+J%d+K%d+L%d,0)`, row, row, row, row), r.rank))
 	g.put(rankSharing, row, whole(fmt.Sprintf("COUNTIFS(%s,G%d,%s,M%d)", ranked(rankContest), row, ranked(rankPlace), row), r.sharing))
+	g.put(rankRun, row, count(r.Rank))
 }
 
 // whole is a formula that counts.

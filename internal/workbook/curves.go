@@ -75,7 +75,10 @@ func (l *layout) curveBlock(g *grid, k curveKind) {
 			key := curveKey{lot: lot.no, kind: c.Kind, agent: c.Agent, stages: c.Stages, receiverC: c.ReceiverC}
 			l.curveRows[key] = rows{row - first + 1, row - first + len(c.Rows)}
 			for i, values := range c.Rows {
-				g.putRow(row, text(plain, lot.Job.Name), curveOf(c), count(i+1))
+				if i == 0 {
+					g.putRow(row, text(plain, lot.Job.Name), curveOf(c))
+				}
+				g.put(3, row, count(i+1))
 				for j, v := range values {
 					g.put(curveFirst+j, row, number(cutTo(v, curveDigits), k.columns[j].unit).shown("0.0000E+00"))
 				}

@@ -172,6 +172,9 @@ func (l *layout) routeSettings(g *grid, lot *lotModel) {
 			if s.handOver > 0 {
 				s.setRow = l.enter(g, name("handover_"), label("water handed over"), s.handOver, "mg/kg", "tuned by the program", lot.after(), 0, mostWater)
 			}
+			if s.aim > 0 {
+				s.setRow = l.enter(g, name("aim_"), label("sized for"), s.aim, "mg/kg", "set by the program so that the route is sure enough", lot.after(), 0, mostWater)
+			}
 			if s.hours > 0 {
 				s.hoursRow = l.enter(g, name("hours_"), label("stands"), s.hours, "h", "tuned by the program", lot.after(), 0.01, 8784)
 				s.stirRow = l.choice(g, name("stirred_"), label("stirred"), yesNo(s.stirred), "tuned by the program", lot.after(), l.yesNoList)

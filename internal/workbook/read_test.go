@@ -4,10 +4,15 @@ import (
 	"archive/zip"
 	"bytes"
 	"encoding/xml"
+	"errors"
+	"fmt"
 	"io"
+	"regexp"
 	"strconv"
 	"strings"
 	"testing"
+
+	"github.com/xuri/excelize/v2"
 )
 
 // stored is a cell as it stands in a file, read without the library that wrote it.
@@ -37,7 +42,11 @@ type book struct {
 type xmlCell struct {
 	R string `xml:"r,attr"`
 	T string `xml:"t,attr"`
-	F string `xml:"f"`
+	F struct {
+		Text  string `xml:",chardata"`
+		Kind  string `xml:"t,attr"`
+		Group string `xml:"si,attr"`
+	} `xml:"f"`
 	V string `xml:"v"`
 	I string `xml:"is>t"`
 }
@@ -68,10 +77,16 @@ func readBook(t *testing.T, data []byte) *book {
 			} `xml:"sheetData>row"`
 		}
 		b.decode(t, b.part[sheet], &x)
-		cells := map[string]stored{}
+		cells, first := map[string]stored{}, map[string]xmlCell{} // of a formula that cells share
 		for _, row := range x.Rows {
 			for _, c := range row.Cells {
-				s := stored{formula: c.F, kind: c.T, raw: c.V, text: c.V}
+				if c.F.Kind == "shared" {
+					if c.F.Text != "" {
+						first[c.F.Group] = c
+					}
+					c.F.Text = moved(t, first[c.F.Group], c.R)
+				}
+				s := stored{formula: c.F.Text, kind: c.T, raw: c.V, text: c.V}
 				switch c.T {
 				case "s":
 					i, err := strconv.Atoi(c.V)
@@ -88,6 +103,35 @@ func readBook(t *testing.T, data []byte) *book {
 		b.cells[sheet] = cells
 	}
 	return b
+}
+
+var aCell = regexp.MustCompile(`"[^"]*"|(\$?)\b([A-Z]{1,3})(\$?)([0-9]+)\b`)
+
+// moved is the formula of a cell as it reads in another one.
+func moved(t *testing.T, from xmlCell, to string) string {
+	t.Helper()
+	c1, r1, err1 := excelize.CellNameToCoordinates(from.R)
+	c2, r2, err2 := excelize.CellNameToCoordinates(to)
+	if err := errors.Join(err1, err2); err != nil {
+		t.Fatal(err)
+	}
+	return aCell.ReplaceAllStringFunc(from.F.Text, func(s string) string {
+		m := aCell.FindStringSubmatch(s)
+		if m[2] == "" {
+			return s
+		}
+		column, row, err := excelize.CellNameToCoordinates(m[2] + m[4])
+		if err != nil {
+			t.Fatal(err)
+		}
+		if m[1] == "" {
+			column += c2 - c1
+		}
+		if m[3] == "" {
+			row += r2 - r1
+		}
+		return m[1] + columnName(column) + m[3] + strconv.Itoa(row)
+	})
 }
 
 func (b *book) decode(t *testing.T, part string, into any) {
@@ -180,10 +224,22 @@ func (b *book) repack(t *testing.T, changed map[string][]byte) []byte {
 	return out.Bytes()
 }
 
+var sharedFormula = regexp.MustCompile(`<c r="([A-Z]+[0-9]+)"([^>]*)><f t="shared"[^>]*?(?:/>|>[^<]*</f>)`)
+
+// plain is a sheet in which no cell leans on the formula of another.
+func (b *book) plain(sheet string) []byte {
+	return sharedFormula.ReplaceAllFunc(b.parts[b.part[sheet]], func(s []byte) []byte {
+		m := sharedFormula.FindSubmatch(s)
+		var f bytes.Buffer
+		xml.EscapeText(&f, []byte(b.cells[sheet][string(m[1])].formula))
+		return fmt.Appendf(nil, `<c r="%s"%s><f>%s</f>`, m[1], m[2], f.Bytes())
+	})
+}
+
 // with is the file with one cell holding a number instead of what it held.
 func (b *book) with(t *testing.T, sheet, place, value string) []byte {
 	t.Helper()
-	part := b.parts[b.part[sheet]]
+	part := b.plain(sheet)
 	start := bytes.Index(part, []byte(`<c r="`+place+`"`))
 	if start < 0 {
 		t.Fatalf("no cell %s on %s", place, sheet)

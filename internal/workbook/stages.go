@@ -17,6 +17,7 @@ type stageModel struct {
 	last      bool
 
 	handOver, hours float64 // settings; 0 where the step has none
+	aim             float64 // mg/kg, of a last step that is not sized for the limit
 	stirred         bool
 	sieve           string
 	stages          int     // of the column of a forerun
@@ -40,6 +41,9 @@ func stagesOf(r *routeModel, constants []routes.Constants) []*stageModel {
 		}
 		if !s.last && s.needsCurve() && i < len(run.Settings.HandOverMgPerKg) {
 			s.handOver = tidy(run.Settings.HandOverMgPerKg[i])
+		}
+		if s.last {
+			s.aim = tidy(run.Settings.AimMgPerKg)
 		}
 		if o.Kind == steps.Soak && soaks < len(run.Settings.SoakHours) {
 			s.hours = tidy(run.Settings.SoakHours[soaks])
@@ -151,7 +155,7 @@ func (l *layout) sieveUses(agent string) float64 {
 // constantsOf are the values of the columns of a step that hold no formula, by key.
 func (l *layout) constantsOf(s *stageModel) map[string]float64 {
 	k := s.constants
-	m := map[string]float64{"last": truth(s.last), "setrow": float64(max(s.setRow, 1))}
+	m := map[string]float64{"last": truth(s.last), "atlimit": truth(s.last && s.aim == 0), "setrow": float64(max(s.setRow, 1))}
 	if s.needsCurve() {
 		r := l.curveRows[s.curve()]
 		m["from"], m["to"] = float64(r.first), float64(r.last)

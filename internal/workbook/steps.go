@@ -38,7 +38,7 @@ func (l *layout) steps() *grid {
 	widths[stepWhy-1], widths[stepState-1] = 44, 18
 	g := newGrid(sheetSteps, "What each step does. The blocks of lots and steps follow the inputs by the closed forms and curves of the program; the column State says where only a new run can.",
 		tabWork, checkCell(), widths...)
-	g.mixed, g.frozenRows, g.frozenColumns = true, frameRows, 3 // the blocks share only these columns
+	g.exact, g.mixed, g.frozenRows, g.frozenColumns = true, true, frameRows, 3 // the blocks share only these columns
 	all := l.allSteps()
 	l.liveRows(g)
 	l.resultBlock(g)
@@ -258,11 +258,15 @@ func (l *layout) waterFormat() string {
 	return formatFor(each(l.routes, func(r *routeModel) float64 { return r.waterOut })...)
 }
 
+// figuresShown routes of a lot have their figures in the workbook; --explain prints
+// those of any route.
+const figuresShown = 3
+
 func (l *layout) figureBlock(g *grid, all []stepModel) {
-	row := g.table(g.next(), fmt.Sprintf("Figures of the steps, for the first %d routes of a lot and for single steps", mostDrawn), []column{{name: "Lot"}, {name: "Route id"}, {"Route no", "1"}, {"Step", "1"},
+	row := g.table(g.next(), fmt.Sprintf("Figures of the steps, for the first %d routes of a lot", figuresShown), []column{{name: "Lot"}, {name: "Route id"}, {"Route no", "1"}, {"Step", "1"},
 		{name: "Figure"}, {}, {}, {}, {"Value", "1"}, {name: "Unit"}})
 	for _, s := range all {
-		if first := s.route.Rank > 0 && s.route.Rank <= mostDrawn; !first && len(s.route.Run.Outcomes) > 1 {
+		if s.route.Rank < 1 || s.route.Rank > figuresShown {
 			continue
 		}
 		for _, f := range s.Figures {
