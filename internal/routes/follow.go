@@ -23,9 +23,9 @@ type Curve struct {
 	Rows      [][]float64
 }
 
-// CurveNodes is how many rows a curve has; a power of two, so that a place in it
-// is found by halving.
-const CurveNodes = 64
+// CurveNodes is how many rows a curve has; a place in it is found by halving six
+// times.
+const CurveNodes = 48
 
 // Follow is what a reader needs to follow the routes of a lot by closed forms.
 type Follow struct {

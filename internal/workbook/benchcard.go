@@ -96,15 +96,16 @@ func (c *cardModel) helper(figure, route int) int { return cardHelper + figure*m
 // choose shows the value that the chosen route has in a row.
 func (c *cardModel) choose(column, row, figure int, l look, format, unit string, values []any) {
 	for k, v := range values {
-		x := cell{look: plain, value: tidyAny(v)}
-		if _, ok := v.(float64); ok {
-			x = cell{look: program, value: tidyAny(v), unit: unit, format: format}
+		x := cell{look: plain, value: v}
+		if f, ok := v.(float64); ok {
+			values[k] = cutTo(f, shownDigits)
+			x = cell{look: program, value: values[k], unit: unit, format: format}
 		}
 		c.g.put(c.helper(figure, k), row, x)
 	}
 	from := fmt.Sprintf("$%s%d:$%s%d", columnName(c.helper(figure, 0)), row, columnName(c.helper(figure, len(c.list)-1)), row)
 	v := values[c.chosen]
-	out := cell{look: l, formula: fmt.Sprintf("INDEX(%s,%s)", from, c.index), value: tidyAny(v), format: format, unit: unit}
+	out := cell{look: l, formula: fmt.Sprintf("INDEX(%s,%s)", from, c.index), value: v, format: format, unit: unit}
 	out.right = format != ""
 	c.g.put(column, row, out)
 }

@@ -189,7 +189,7 @@ var sieveColumns = []liveColumn{
 	constant("from", "Curve from row", "1"), constant("to", "Curve to row", "1"), constant("hold", "Held by the beads", "m3/kg"), constant("fade", "Capacity lost a use", "1"),
 	constant("ovenkg", "Oven takes", "kg"), constant("runkwh", "A run of the oven", "kWh"), constant("runh", "Work of a run", "h"), constant("activated", "Activated before use", "1"), constant("usesrow", "Row of its uses", "1"),
 	constant("sieverow", "Row of its setting", "1"), {"again", "Used again", "1", `(INDEX(input_values,{sieverow})="regenerate")*1`}, {"uses", "Uses of a charge", "1", "IF({again}=1,INDEX(input_values,{usesrow}),1)"},
-	{"q0", "Water on the sieve", "kg/kg", "{lot.q0}"}, {"cs", "Capacity at the last use", "1", "(1-{fade})^({uses}-1)"}, {"first", "Wet enough for the sieve", "1", "({w}>{goal})*({w}<=INDEX(loading_water,{to}))*({cs}*INDEX(loading_held,{from})<={q0})"},
+	{"q0", "Water on the sieve", "kg/kg", "{lot.q0}"}, {"cs", "Capacity at the last use", "1", "(1-{fade})^({uses}-1)"}, {"first", "Wet enough for the sieve", "1", "({w}>{goal})*({w}<=INDEX(load_water,{to}))*({cs}*INDEX(load_held,{from})<={q0})"},
 	{"dry", "No free water", "1", "({w}<=MAX({excess}*{lot.sat},{lot.w}*(1+job_tie*1000)))*1"}, constant("excess", "Free water from, times saturation", "1"),
 	constant("billed", "The bill has an oven", "1"), {"runs", "Oven runs", "1", "IF({again}+{activated}>0,{agent}/{ovenkg},0)"},
 }
@@ -209,20 +209,20 @@ func soakBlock() *liveBlock {
 		constant("att", "Attended", "s"), constant("stirw", "Stirrer", "W"), constant("most", "Largest dose", "kg/m3"), constant("hoursrow", "Row of its hours", "1"), constant("stirrow", "Row of its stirring", "1"),
 		{"h", "Stands", "h", "INDEX(input_values,{hoursrow})"}, {"stir", "Stirred", "1", `(INDEX(input_values,{stirrow})="yes")*1`}, {"t", "Stands", "s", "{h}*60*60"},
 		{"vol", "Volume", "m3", "{S}/{lot.ds}+{W}/{lot.dw}"}, {"r0", "Water in", "kg/kg", "{W}/{S}"},
-		{"kb", "Beads", "m3/(kg s)", "IF({stir}=1,{beads1},{beads0})"}, {"skb", "Beads, times solvent", "m3/s", "{S}*{kb}"}, {"rm", "Mixing resists", "s", "IF({stir}=1,0,{lot.depth}/{mix}/{mixdepth})"},
-		{"em", "Left by mixing", "1", "IFERROR(EXP(-{t}/{rm}),0)"}, {"top", "Equilibrium at most", "kg/kg", "({goal}-{w}*{em})/(1-{em})"},
+		{"kb", "Beads", "m3/(kg s)", "IF({stir}=1,{beads1},{beads0})"}, {"rm", "Mixing resists", "s", "IF({stir}=1,0,{lot.depth}/{mix}/{mixdepth})"},
+		{"nought", "Before the curve", "1", "{from}-1"}, {"vk", "Volume over solvent and beads", "s", "{vol}/{S}/{kb}"}, {"ktmost", "K t of any dose, at most", "1", "IFERROR(MIN(1000,{t}/{rm}),1000)"},
 	})
 	own = append(own, halvingForDose()...)
 	own = append(own, []liveColumn{
-		{"ka", "Node below", "1", "MAX({from},{df})"}, {"wa", "Node below", "kg/kg", "INDEX(loading_water,{ka})"}, {"wb", "Node above", "kg/kg", "MIN(INDEX(loading_water,MIN({ka}+1,{to})),{top})"},
-		{"qa", "Held at the node", "kg/kg", "{cs}*INDEX(loading_held,{ka})"},
-		{"slope", "Slope of the loading", "1", "({cs}*INDEX(loading_held,MIN({ka}+1,{to}))-{qa})/(INDEX(loading_water,MIN({ka}+1,{to}))-{wa})"},
-		{"feasible", "A dose reaches it", "1", "({df}>={from})*({qa}+{slope}*({wb}-{wa})>{q0})*({wb}>{wa})"},
-		{"ktlow", "K t at the node below", "1", "IFERROR(LN(({w}-{wa})/({goal}-{wa})),0)"}, {"kthigh", "K t at most", "1", "IFERROR(LN(({w}-{wb})/({goal}-{wb})),1000)"},
+		{"ka", "Node below", "1", "MAX({from},{df})"}, {"wa", "Node below", "kg/kg", "INDEX(load_water,{ka})"}, {"wb", "Node above", "kg/kg", "INDEX(load_water,MIN({ka}+1,{to}))"},
+		{"qa", "Held at the node", "kg/kg", "{cs}*INDEX(load_held,{ka})"},
+		{"slope", "Slope of the loading", "1", "({cs}*INDEX(load_held,MIN({ka}+1,{to}))-{qa})/({wb}-{wa})"},
+		{"ktlow", "K t at the node below", "1", "IFERROR(LN(({w}-{wa})/({goal}-{wa})),0)"}, {"kthigh", "K t at the node above, or at most", "1", "IFERROR(MIN({ktmost},LN(({w}-{wb})/({goal}-{wb}))),{ktmost})"},
 	}...)
 	own = append(own, rateForDose()...)
 	own = append(own, []liveColumn{
-		{"exact", "Dose that reaches it", "kg/m3", "IFERROR({S}*({r0}-{x6}/(1-{x6}))/({qa}+{slope}*({x6}-{wa})-{q0})/{vol},{most})"},
+		{"feasible", "A dose reaches it", "1", "({df}>={from})*({h1}>0)*({kthigh}>{ktlow})"},
+		{"exact", "Dose that reaches it", "kg/m3", "IFERROR({S}*({r0}-{x6}/(1-{x6}))/{h6}/{vol},{most})"},
 		{"dose", "Dose", "kg/m3", "IF({feasible}=1,MIN({most},MAX(site_least_dose,{exact})),{most})"},
 		{"solved", "Solved, or far under the least dose", "1", "MAX(1-{feasible},(ABS({g5}-{kt5})<={kt5}*job_tie*1000*1000)*1,({exact}+{exact}<site_least_dose)*1)"},
 		{"meets", "Dosed to reach it", "1", "{feasible}*({exact}>=site_least_dose)*({exact}<={most})"},
@@ -230,8 +230,8 @@ func soakBlock() *liveBlock {
 	}...)
 	own = append(own, halvingForWater()...)
 	own = append(own, []liveColumn{
-		{"ea", "Node below", "1", "MAX({from},MIN({hf},{to}-1))"}, {"ua", "Node below", "kg/kg", "INDEX(loading_water,{ea})"}, {"ub", "Node above", "kg/kg", "INDEX(loading_water,{ea}+1)"},
-		{"fa", "Water at the node below", "kg", "{S}*{ua}/(1-{ua})+{m}*{cs}*INDEX(loading_held,{ea})"}, {"fb", "Water at the node above", "kg", "{S}*{ub}/(1-{ub})+{m}*{cs}*INDEX(loading_held,{ea}+1)"},
+		{"ea", "Node below", "1", "MAX({from},MIN({hf},{to}-1))"}, {"ua", "Node below", "kg/kg", "INDEX(load_water,{ea})"}, {"ub", "Node above", "kg/kg", "INDEX(load_water,{ea}+1)"},
+		{"fa", "Water at the node below", "kg", "{S}*{ua}/(1-{ua})+{m}*{cs}*INDEX(load_held,{ea})"}, {"fb", "Water at the node above", "kg", "{S}*{ub}/(1-{ub})+{m}*{cs}*INDEX(load_held,{ea}+1)"},
 		{"eq", "Equilibrium", "kg/kg", "{ua}+({ub}-{ua})*({all}-{fa})/({fb}-{fa})"}, {"oncurve", "On the curve", "1", "({fa}<={all}*(1+job_tie))*({all}<={fb}*(1+job_tie))*({t}>0)"}, {"k", "Rate", "1/s", "1/({rm}+1/({kb}*{dose}))"},
 		{"out", "Water out", "kg/kg", "IF({meets}=1,{goal},{eq}+({w}-{eq})*EXP(-{k}*{t}))"}, {"held", "Held by the beads", "kg", "MIN({m}*{hold}*{lot.ds},{S})"},
 	}...)
@@ -260,12 +260,11 @@ func rateForDose() (out []liveColumn) {
 		point := []liveColumn{
 			{"kt#", "K t, try #", "1", next},
 			{"x#", "Equilibrium, try #", "kg/kg", "({goal}-{w}*EXP(-{kt#}))/(1-EXP(-{kt#}))"},
-			{"n#", "Water to take, times beads", "m3 kg/s", "{skb}*({r0}-{x#}/(1-{x#}))"},
-			{"d#", "The same over K", "m3", "{n#}*{rm}+{vol}*({qa}+{slope}*({x#}-{wa})-{q0})"},
-			{"g#", "Leads to K t", "1", "IF({d#}>0,MIN({kthigh},{n#}*{t}/{d#}),{kthigh})"},
+			{"h#", "Held more, try #", "kg/kg", "{qa}+{slope}*({x#}-{wa})-{q0}"},
+			{"g#", "Leads to K t", "1", "IF({h#}>0,MIN({kthigh},{t}/({rm}+{vk}*{h#}/({r0}-{x#}/(1-{x#})))),{kthigh})"},
 		}
 		if i == 6 {
-			point = point[:2]
+			point = point[:3]
 		}
 		for _, c := range point {
 			at := strings.NewReplacer("#", strconv.Itoa(i))
@@ -275,19 +274,21 @@ func rateForDose() (out []liveColumn) {
 	return out
 }
 
-var halves = []string{"a", "b", "c", "d", "e", "f"} // of the nodes of a curve: 2 to that many
+// halves of the nodes of a curve, of their half and so on, down to one node.
+var halves = []string{"a", "b", "c", "d", "e", "f"}
 
-// halvingForDose finds the last node of the loading curve at which more sorbent is
-// needed to hold the water than to be in time.
+// halvingForDose finds the last node of the loading curve at which the dose that
+// holds the water is too large for the time: K t times 1/K is less than there is.
 func halvingForDose() (out []liveColumn) {
-	before := "{from}-1"
+	before := "{nought}"
 	for _, s := range halves {
-		w, held := "try"+s, "d"+s
+		node := fmt.Sprintf("%s+half_%s", before, s)
+		found := "%s*({kt%s}*({rm}+{vk}*({cs}*INDEX(load_held,%s)-{q0})/({r0}-{try%s}/(1-{try%s})))<{t})"
 		out = append(out,
-			liveColumn{w, "Node tried", "kg/kg", fmt.Sprintf("INDEX(loading_water,%s+stride_%s)", before, s)},
-			liveColumn{"over" + s, "Over at it", "kg", fmt.Sprintf("IFERROR({skb}*({r0}-{%[1]s}/(1-{%[1]s}))*({t}/LN(({w}-{%[1]s})/({goal}-{%[1]s}))-{rm}),-1)", w)},
-			liveColumn{held, "Node found", "1", fmt.Sprintf("%[1]s+stride_%[2]s*({%[3]s}<{top})*({over%[2]s}>{vol}*({cs}*INDEX(loading_held,%[1]s+stride_%[2]s)-{q0}))", before, s, w)})
-		before = "{" + held + "}"
+			liveColumn{"try" + s, "Node tried", "kg/kg", fmt.Sprintf("INDEX(load_water,%s)", node)},
+			liveColumn{"kt" + s, "K t at it", "1", fmt.Sprintf("IFERROR(LN(({w}-{try%[1]s})/({goal}-{try%[1]s})),1000*1000)", s)},
+			liveColumn{"d" + s, "Node found", "1", fmt.Sprintf(found, node, s, node, s, s)})
+		before = "{d" + s + "}"
 	}
 	return out
 }
@@ -299,8 +300,8 @@ func halvingForWater() (out []liveColumn) {
 	for _, s := range halves {
 		w := "share" + s
 		out = append(out,
-			liveColumn{w, "Node tried", "kg/kg", fmt.Sprintf("INDEX(loading_water,%s+stride_%s)", before, s)},
-			liveColumn{"h" + s, "Node found", "1", fmt.Sprintf("%[1]s+stride_%[2]s*({S}*{%[3]s}/(1-{%[3]s})+{m}*{cs}*INDEX(loading_held,%[1]s+stride_%[2]s)<={all}*(1+job_tie))", before, s, w)})
+			liveColumn{w, "Node tried", "kg/kg", fmt.Sprintf("INDEX(load_water,%s+half_%s)", before, s)},
+			liveColumn{"h" + s, "Node found", "1", fmt.Sprintf("%[1]s+half_%[2]s*({S}*{%[3]s}/(1-{%[3]s})+{m}*{cs}*INDEX(load_held,%[1]s+half_%[2]s)<={all}*(1+job_tie))", before, s, w)})
 		before = "{h" + s + "}"
 	}
 	return out
@@ -310,11 +311,11 @@ func columnBlock() *liveBlock {
 	own := columnsOf(chain, sieveColumns, []liveColumn{
 		constant("recycle", "First runnings", "1"), constant("pumpw", "Pump", "W"), constant("setup", "Set-up", "s"), constant("share", "Attended share", "1"), constant("hasnarrow", "There is a narrower one", "1"), constant("haswide", "There is a wider one", "1"),
 		{"vol", "Volume", "m3", "{S}/{lot.ds}+{W}/{lot.dw}"},
-		{"bare", "Held at the floor", "kg/kg", "{q0}/{cs}"}, {"i", "Place of the floor", "1", placeIn("loading_held", "bare")},
-		{"floor", "Floor", "kg/kg", "INDEX(loading_water,{i})+{fi}*{gap}"}, {"fi", "Share of the floor", "1", "({bare}-INDEX(loading_held,{i}))/(INDEX(loading_held,{i}+1)-INDEX(loading_held,{i}))"}, {"gap", "To the next node", "kg/kg", "INDEX(loading_water,{i}+1)-INDEX(loading_water,{i})"},
-		{"j", "Place of the feed", "1", placeIn("loading_water", "w")},
-		{"fj", "Share of the feed", "1", "({w}-INDEX(loading_water,{j}))/(INDEX(loading_water,{j}+1)-INDEX(loading_water,{j}))"},
-		{"heldin", "Held at the feed", "kg/kg", "{cs}*(" + lookup("loading_held", "j", "fj") + ")"}, {"removed", "To be taken", "kg", "{S}*({W}/{S}-{floor}/(1-{floor}))"},
+		{"bare", "Held at the floor", "kg/kg", "{q0}/{cs}"}, {"i", "Place of the floor", "1", placeIn("load_held", "bare")},
+		{"floor", "Floor", "kg/kg", "INDEX(load_water,{i})+{fi}*{gap}"}, {"fi", "Share of the floor", "1", "({bare}-INDEX(load_held,{i}))/(INDEX(load_held,{i}+1)-INDEX(load_held,{i}))"}, {"gap", "To the next node", "kg/kg", "INDEX(load_water,{i}+1)-INDEX(load_water,{i})"},
+		{"j", "Place of the feed", "1", placeIn("load_water", "w")},
+		{"fj", "Share of the feed", "1", "({w}-INDEX(load_water,{j}))/(INDEX(load_water,{j}+1)-INDEX(load_water,{j}))"},
+		{"heldin", "Held at the feed", "kg/kg", "{cs}*(" + lookup("load_held", "j", "fj") + ")"}, {"removed", "To be taken", "kg", "{S}*({W}/{S}-{floor}/(1-{floor}))"},
 	}, bedColumns(""), bedColumns("n"), []liveColumn{
 		{"agentkg", "Bed", "kg", "{len}*{area}*{rho}"}, {"held", "Held by the bed", "kg", "MIN({agent}*{hold}*{lot.ds},{S})"}, {"pumps", "Pumped", "s", "{pumped}/{flow}"},
 	})

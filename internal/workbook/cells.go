@@ -112,10 +112,6 @@ func (g *grid) widest() (row []cell) {
 // appendCells adds the rows of a grid as a sheet holds them.
 func (w *file) appendCells(out []byte, g *grid) ([]byte, error) {
 	shared, next, ids := g.shares(), make([]int, len(g.widest())), 0
-	digits := storedDigits
-	if g.exact {
-		digits = significantDigits
-	}
 	id := make([]int, len(next)) // of the formula that a column shares
 	names := make([]string, len(next))
 	for c := range names {
@@ -154,7 +150,7 @@ func (w *file) appendCells(out []byte, g *grid) ([]byte, error) {
 				}
 			}
 			var err error
-			if out, err = appendFormula(out, x, f, digits); err != nil {
+			if out, err = appendFormula(out, x, f); err != nil {
 				return nil, err
 			}
 		}
@@ -162,6 +158,11 @@ func (w *file) appendCells(out []byte, g *grid) ([]byte, error) {
 	}
 	return out, nil
 }
+
+// sharedDigits are the digits stored of what a shared formula gives. A reader that
+// does not calculate shows no more; one that does has all of them again. Some
+// calculate the shared formulas alone: what those read is stored in full.
+const sharedDigits = 10
 
 // sharing says that a cell holds the formula that others hold too; the first of
 // them names the cells.
@@ -185,7 +186,7 @@ func (w *file) appendValue(out []byte, x *cell) []byte {
 }
 
 // appendFormula adds a formula and what it gives.
-func appendFormula(out []byte, x *cell, f sharing, digits int) ([]byte, error) {
+func appendFormula(out []byte, x *cell, f sharing) ([]byte, error) {
 	s, isText := x.value.(string)
 	v, isNumber := x.value.(float64)
 	switch {
@@ -208,7 +209,10 @@ func appendFormula(out []byte, x *cell, f sharing, digits int) ([]byte, error) {
 	if isText {
 		out = appendText(out, clean(s))
 	} else {
-		out = strconv.AppendFloat(out, cutTo(v, digits), 'G', -1, 64)
+		if f.shared {
+			v = cutTo(v, sharedDigits)
+		}
+		out = strconv.AppendFloat(out, v, 'G', -1, 64)
 	}
 	return append(out, "</v></c>"...), nil
 }

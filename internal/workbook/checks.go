@@ -28,7 +28,6 @@ type test struct {
 func (l *layout) checks() *grid {
 	g := newGrid(sheetChecks, "Found and expected must agree within the tolerance. The sum of the flags is 0 when all checks hold.",
 		tabCheck, cell{look: message, formula: "check_message", value: checksHold}, 10, 74, 15, 15, 15, 12, 12, 8, 15)
-	g.exact = true
 	first := frameRows + 8
 	g.table(first-2, "Always checked", checkColumns)
 	g.frozenRows = first - 1

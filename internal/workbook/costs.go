@@ -15,16 +15,15 @@ const (
 	billQty    = 7
 	billUnit   = 8
 	billPer    = 9
-	billShared = 10
-	billBatch  = 11
-	billPrice  = 12
-	billAmount = 13
-	billBasis  = 14
-	billPlace  = 15 // of the quantity on Steps
-	billColumn = 16
-	billTimes  = 17
-	billFactor = 18
-	billCarbon = 19
+	billBatch  = 10
+	billPrice  = 11
+	billAmount = 12
+	billBasis  = 13
+	billPlace  = 14 // of the quantity on Steps
+	billColumn = 15
+	billTimes  = 16
+	billFactor = 17
+	billCarbon = 18
 )
 
 // Columns of the blocks below the bill.
@@ -66,7 +65,7 @@ var headNames = map[steps.Head]string{
 
 func (l *layout) costs() *grid {
 	g := newGrid(sheetCosts, "The bill of each route: quantity × price = amount, for one batch. Below the lines: cost by head, cost per litre, target and rank. Amounts are exact and shown to a hundredth of a cent; the bill is rounded once, where it is written to the cent.",
-		tabWork, checkCell(), 26, 30, 10, 13, 12, 17, 11, 11, 11, 11, 11, 11, 11, 52, 9, 9, 12, 11, 11)
+		tabWork, checkCell(), 26, 30, 10, 13, 12, 17, 11, 11, 11, 11, 11, 11, 52, 9, 9, 12, 11, 11)
 	g.printColumns = billBasis
 	g.mixed, g.frozenRows, g.frozenColumns = true, frameRows, 3 // the blocks share only these columns
 	l.billBlock(g)
@@ -82,7 +81,7 @@ func (l *layout) costs() *grid {
 
 func (l *layout) billBlock(g *grid) {
 	first := g.table(frameRows+2, "Lines of the bill", []column{{name: "Lot"}, {name: "Route id"}, {"Route no", "1"}, {name: "Head"}, {"Step, 0 for the route", "1"},
-		{name: "Item"}, {"Quantity", "1"}, {name: "Unit"}, {name: "Counted per"}, {"Shared by", "batches"}, {"Quantity per batch", "1"},
+		{name: "Item"}, {"Quantity", "1"}, {name: "Unit"}, {name: "Counted per"}, {"Quantity per batch", "1"},
 		{"Price of a unit", l.currency()}, {"Amount", l.currency()}, {name: "Basis"},
 		{"Row on Steps", "1"}, {"Column on Steps", "1"}, {"Times", "1"}, {"Emissions of a unit", "kg CO2e"}, {"Emissions", "kg CO2e"}})
 	l.names = append(l.names, definedName{"steps_uses", l.usesArea()})
@@ -107,8 +106,7 @@ func (l *layout) billRow(g *grid, row int, r *routeModel, line lineModel) {
 		text(plain, headNames[line.Head]), count(line.Step), text(words, line.Item),
 		cell{look: formula, unit: symbol(line.Unit), format: quantity,
 			formula: fmt.Sprintf("INDEX(steps_uses,%s,%s)*%s", at(billPlace, row), at(billColumn, row), at(billTimes, row))}, text(plain, symbol(line.Unit)), text(plain, per),
-		derived(fmt.Sprintf(`IF(%s="year",%s,1)`, at(billPer, row), l.lotName(r.lot, "batches_per_year")), line.shared).shown(formatFor(line.shared)),
-		derived(at(billQty, row)+"/"+at(billShared, row), line.perBatch).in(symbol(line.Unit)).shown(quantity),
+		derived(fmt.Sprintf(`%s/IF(%s="year",%s,1)`, at(billQty, row), at(billPer, row), l.lotName(r.lot, "batches_per_year")), line.perBatch).in(symbol(line.Unit)).shown(quantity),
 		derived(priceName(line.Item, line.Unit), line.price).in(l.money(line.Unit)).shown(l.priceFormat()),
 		derived(at(billBatch, row)+"*"+at(billPrice, row), line.amount).in(l.currency()).shown(exactMoney),
 		text(words, line.Basis))...)

@@ -19,7 +19,7 @@ type curveKind struct {
 
 var curveKinds = []curveKind{
 	{steps.Soak, "Loading of a sorbent against water and its activity, at room temperature", column{name: "Sorbent"},
-		[]column{{"Water", "kg/kg"}, {"Activity of water", "1"}, {"Held", "kg/kg"}}, []string{"loading_water", "loading_activity", "loading_held"}},
+		[]column{{"Water", "kg/kg"}, {"Activity of water", "1"}, {"Held", "kg/kg"}}, []string{"load_water", "load_activity", "load_held"}},
 	{steps.Trap, "Pot under a trap: vapour boiled up and heat for one mole of what stays, from the wettest pot on", column{name: "Receiver"},
 		[]column{{"Water in the pot", "kg/kg"}, {"Vapour boiled up", "mol/mol"}, {"Heat", "J/mol"}, {"ln of what is left", "1"}, {"Water in the vapour", "mol/mol"}, {"Latent heat", "J/mol"}, {"To warm water", "J/mol"}, {"To warm solvent", "J/mol"}},
 		[]string{"trap_water", "trap_vapour_boiled", "trap_heat", "trap_left", "trap_vapour", "trap_latent", "trap_warm_w", "trap_warm_s"}},
@@ -48,8 +48,9 @@ func (l *layout) searchSteps(g *grid) {
 	row := frameRows + 2
 	g.put(1, row, text(block, "Strides in which a place in a curve is found"))
 	for i, s := range halves {
-		g.put(curveFirst+i, row, count(routes.CurveNodes>>(i+1)))
-		l.name("stride_"+s, sheetCurves, curveFirst+i, row)
+		half := 1 << (i + 1)
+		g.put(curveFirst+i, row, count((routes.CurveNodes+half-1)/half))
+		l.name("half_"+s, sheetCurves, curveFirst+i, row)
 	}
 }
 
@@ -65,7 +66,7 @@ func (l *layout) curveBlock(g *grid, k curveKind) {
 	if count64 == 0 {
 		return
 	}
-	row := g.table(g.next(), k.title, append([]column{{name: "Lot"}, k.what, {"Node", "1"}}, k.columns...))
+	row := g.table(g.next(), k.title, append([]column{{name: "Lot"}, k.what, {"Nodes", "1"}}, k.columns...))
 	first := row
 	for _, lot := range l.lots {
 		for _, c := range lot.Follow.Curves {
@@ -76,9 +77,8 @@ func (l *layout) curveBlock(g *grid, k curveKind) {
 			l.curveRows[key] = rows{row - first + 1, row - first + len(c.Rows)}
 			for i, values := range c.Rows {
 				if i == 0 {
-					g.putRow(row, text(plain, lot.Job.Name), curveOf(c))
+					g.putRow(row, text(plain, lot.Job.Name), curveOf(c), count(len(c.Rows)))
 				}
-				g.put(3, row, count(i+1))
 				for j, v := range values {
 					g.put(curveFirst+j, row, number(cutTo(v, curveDigits), k.columns[j].unit).shown("0.0000E+00"))
 				}
@@ -155,6 +155,9 @@ const coursePoints = 13
 // curveDigits are the digits kept of a curve: more than its model is good for, few
 // enough to keep the file small.
 const curveDigits = 7
+
+// shownDigits are the digits kept of what is only looked at.
+const shownDigits = 6
 
 func cutTo(v float64, digits int) float64 {
 	r, err := strconv.ParseFloat(strconv.FormatFloat(v, 'e', digits-1, 64), 64)

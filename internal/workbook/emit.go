@@ -113,11 +113,6 @@ func (w *file) prepare(f *excelize.File) error {
 	return f.SetCalcProps(&excelize.CalcPropsOptions{FullCalcOnLoad: &full})
 }
 
-// storedDigits are the digits stored of what a formula gives: any reader that
-// calculates has all of them again. Some readers calculate a part of a sheet from
-// what is stored; where small differences of such values count, all are stored.
-const storedDigits = 10
-
 // emitter writes grids and keeps the styles that they share.
 type emitter struct {
 	file     *excelize.File

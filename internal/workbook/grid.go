@@ -101,7 +101,6 @@ type grid struct {
 	heights       map[int]float64
 	frozenRows    int
 	frozenColumns int
-	exact         bool // all digits of formulas are stored
 	mixed         bool // blocks with different columns follow each other
 	printColumns  int
 	printed       []rows // what is printed; all rows where there is none

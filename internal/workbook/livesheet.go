@@ -105,7 +105,7 @@ func (l *layout) putLive(b *liveBlock, row int, lot *lotModel, s *stageModel, co
 			f = fmt.Sprintf("INDEX(%s,{fed})", area(out, l.lotRows.rows.first, b.rows.first-3))
 		}
 		if f == "" {
-			g.put(column, row, number(constants[c.key], c.unit).shown("0.0000E+00"))
+			g.put(column, row, number(cutTo(constants[c.key], constantDigits), c.unit).shown("0.0000E+00"))
 			continue
 		}
 		expanded, err := b.expand(f, row, l.lotRows, lot.no)
@@ -113,6 +113,9 @@ func (l *layout) putLive(b *liveBlock, row int, lot *lotModel, s *stageModel, co
 		g.put(column, row, cell{look: formula, formula: expanded, unit: c.unit, format: formatOfUnit(c.unit)})
 	}
 }
+
+// constantDigits are the digits kept of the constants of a step.
+const constantDigits = 10
 
 // formatOfUnit is how numbers of a unit are shown in the blocks of steps.
 func formatOfUnit(unit string) string {

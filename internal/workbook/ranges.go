@@ -21,6 +21,9 @@ const (
 
 const notDrawn = "not drawn"
 
+// seen is a value of the program that nothing is computed from.
+func seen(v float64, unit, format string) cell { return finite(cutTo(v, shownDigits), unit, format) }
+
 func (l *layout) ranges() *grid {
 	g := newGrid(sheetRanges, "How sure the figures are, what moves them, and where the choice turns. Values of the program; ranks and the cost against litres a month follow the prices.",
 		tabResult, checkCell(), 28, 34, 12, 12, 12, 12, 12, 12, 12, 12, 12, 12, 12, 12, 12)
@@ -98,19 +101,19 @@ func (r *routeModel) sure(assurance float64) string {
 
 func (l *layout) rangeRow(g *grid, i int, r *routeModel) {
 	row := l.rangeRows.at(i)
-	g.putRow(row, text(words, r.lot.Job.Name), text(words, r.ID), finite(r.chance(), "%", "0.0"),
+	g.putRow(row, text(words, r.lot.Job.Name), text(words, r.ID), seen(r.chance(), "%", "0.0"),
 		text(program, r.sure(l.report.Job.Assurance)))
 	units, formats := [3]string{"mg/kg", l.money("L"), "h"}, [3]string{decimals(2), moneyFormat, decimals(2)}
 	for k, b := range r.bands() {
 		for j, v := range []float64{b.Low, b.Median, b.High} {
-			g.put(rangeWater+3*k+j, row, finite(v, units[k], formats[k]))
+			g.put(rangeWater+3*k+j, row, seen(v, units[k], formats[k]))
 		}
 	}
 	share := math.NaN()
 	if r.Range != nil {
 		share = 100 * r.Range.CheapestShare
 	}
-	g.put(rangeShare, row, finite(share, "%", "0.0"))
+	g.put(rangeShare, row, seen(share, "%", "0.0"))
 	var rank any = ""
 	if r.rank > 0 && r.sure(l.report.Job.Assurance) != "no" {
 		rank = float64(r.rank)
@@ -157,8 +160,8 @@ func (l *layout) breakEvenBlock(g *grid) {
 				unit = "1"
 			}
 			format := formatFor(tidy(b.Now), tidy(b.At), tidy(b.From), tidy(b.To))
-			g.putRow(row, text(words, lot.Job.Name), text(words, b.What), finite(b.Now, unit, format), finite(b.At, unit, format),
-				finite(b.From, unit, format), finite(b.To, unit, format), text(plain, unit))
+			g.putRow(row, text(words, lot.Job.Name), text(words, b.What), seen(b.Now, unit, format), seen(b.At, unit, format),
+				seen(b.From, unit, format), seen(b.To, unit, format), text(plain, unit))
 			g.across(8, 15, row, words, b.Answer)
 			row++
 		}
@@ -179,8 +182,8 @@ func (l *layout) frontBlock(g *grid) {
 			if p.DominatedBy != "" {
 				state = "beaten"
 			}
-			g.putRow(row, text(words, lot.Job.Name), text(words, p.ID), finite(p.CostPerLitre, l.money("L"), moneyFormat),
-				finite(p.HoursAttended, "h", decimals(2)), finite(p.WasteKg, "kg", decimals(3)), finite(p.EnergyKWh, "kWh", decimals(2)), text(plain, state))
+			g.putRow(row, text(words, lot.Job.Name), text(words, p.ID), seen(p.CostPerLitre, l.money("L"), moneyFormat),
+				seen(p.HoursAttended, "h", decimals(2)), seen(p.WasteKg, "kg", decimals(3)), seen(p.EnergyKWh, "kWh", decimals(2)), text(plain, state))
 			g.across(8, 15, row, words, p.DominatedBy)
 			row++
 		}
@@ -228,6 +231,6 @@ func (l *layout) whatIfBlock(g *grid, lot *lotModel, w *study.WhatIf) {
 		g.put(column, row, text(program, s))
 	})
 	block(fmt.Sprintf("Lot %d, what if: its cost per litre, %s", lot.no, l.money("L")), func(row, column int, c study.WhatIfCell) {
-		g.put(column, row, finite(c.CostPerLitre, l.money("L"), moneyFormat))
+		g.put(column, row, seen(c.CostPerLitre, l.money("L"), moneyFormat))
 	})
 }

@@ -376,7 +376,7 @@ func TestCostsAreLive(t *testing.T) {
 		rows    rows
 		columns []int
 	}{
-		{"Costs", l.lineRows, []int{billShared, billBatch, billPrice, billAmount}},
+		{"Costs", l.lineRows, []int{billQty, billBatch, billPrice, billAmount}},
 		{"Costs", l.headRows, []int{4, 5, 6, 7, 8, 9, 10, 11, 12, 13}},
 		{"Costs", l.writtenRows, []int{4, 5, 6, 7, 8, 9, 10, 11, 12, 13}},
 		{"Costs", l.litreRows, []int{litreTotal, litreCost, litreYear}},

@@ -38,7 +38,7 @@ func (l *layout) steps() *grid {
 	widths[stepWhy-1], widths[stepState-1] = 44, 18
 	g := newGrid(sheetSteps, "What each step does. The blocks of lots and steps follow the inputs by the closed forms and curves of the program; the column State says where only a new run can.",
 		tabWork, checkCell(), widths...)
-	g.exact, g.mixed, g.frozenRows, g.frozenColumns = true, true, frameRows, 3 // the blocks share only these columns
+	g.mixed, g.frozenRows, g.frozenColumns = true, frameRows, 3 // the blocks share only these columns
 	all := l.allSteps()
 	l.liveRows(g)
 	l.resultBlock(g)
@@ -84,7 +84,7 @@ func (l *layout) stepBlock(g *grid, all []stepModel) {
 		}
 		for c, x := range []cell{
 			text(plain, string(s.Kind)), text(words, s.Agent+s.Carrier),
-			from("mg/kg", in, "win"), from("mg/kg", out, "wout"), finite(s.Floor*mgPerKg, "mg/kg", decimals(2)),
+			from("mg/kg", in, "win"), from("mg/kg", out, "wout"), seen(s.Floor*mgPerKg, "mg/kg", decimals(2)),
 			from("h", decimals(2), "hours"), from("h", decimals(2), "attended", "besides"), from("kWh", decimals(2), "energy", "ovenkwh"),
 			from("L", decimals(1), "cooling"), from("kg", decimals(3), "agent"), from("L", decimals(3), "loss1", "loss2", "loss3"),
 			count(live.row - l.lotRows.rows.first + 1), text(words, why(s.Outcome)),
@@ -146,6 +146,9 @@ func why(o steps.Outcome) string {
 	return string(o.Why) + ": " + o.WhyText
 }
 
+// balanceDigits show a gram in a thousand tonnes.
+const balanceDigits = 9
+
 // balanceBlock shows that nothing is lost on the way: in = out + removed.
 func (l *layout) balanceBlock(g *grid, all []stepModel) {
 	first := g.table(g.next(), "Balances of the steps", []column{{name: "Lot"}, {name: "Route id"}, {"Route no", "1"}, {"Step", "1"},
@@ -155,11 +158,12 @@ func (l *layout) balanceBlock(g *grid, all []stepModel) {
 		row, b := first+i, s.Balance
 		g.putRow(row, l.stepKey(s)...)
 		open := func(column int, in, out, removed float64) {
+			in, out, removed = cutTo(in, balanceDigits), cutTo(out, balanceDigits), cutTo(removed, balanceDigits)
 			g.put(column, row, number(in, "kg").shown(decimals(4)))
 			g.put(column+1, row, number(out, "kg").shown(decimals(4)))
 			g.put(column+2, row, number(removed, "kg").shown(decimals(4)))
 			g.put(column+3, row, derived(fmt.Sprintf("%s-%s-%s", at(column, row), at(column+1, row), at(column+2, row)),
-				tidy(in)-tidy(out)-tidy(removed)).in("kg").shown("0.0E+00"))
+				in-out-removed).in("kg").shown("0.0E+00"))
 		}
 		open(5, b.WaterInKg, b.WaterOutKg, b.WaterRemovedKg)
 		open(9, b.SolventInKg, b.SolventOutKg, b.SolventRemovedKg)
@@ -275,7 +279,7 @@ func (l *layout) figureBlock(g *grid, all []stepModel) {
 				unit = "1"
 			}
 			g.putRow(row, append(l.stepKey(s), text(plain, f.Name))...)
-			g.put(9, row, finite(f.Value, unit, formatFor(tidy(f.Value))))
+			g.put(9, row, seen(f.Value, unit, formatFor(tidy(f.Value))))
 			g.put(10, row, text(plain, unit))
 			if math.IsNaN(f.Value) || math.IsInf(f.Value, 0) {
 				g.put(11, row, text(plain, "there is none"))

@@ -34,6 +34,10 @@ type parts struct {
 	writers map[int]*flate.Writer // by level
 }
 
+// smallFile is the level at which a workbook of a few lots can be mailed and is
+// written at once.
+const smallFile = 7
+
 // largePart is the size from which time counts more than a few kilobytes.
 const largePart = 4 << 20
 
@@ -77,7 +81,7 @@ func (p *parts) finish() error {
 }
 
 func (p *parts) compress(part []byte) ([]byte, error) {
-	level := flate.DefaultCompression
+	level := smallFile
 	if len(part) > largePart {
 		level = flate.BestSpeed
 	}
