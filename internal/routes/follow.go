@@ -23,9 +23,12 @@ type Curve struct {
 	Rows      [][]float64
 }
 
-// CurveNodes is how many rows a curve has; a place in it is found by halving six
-// times.
-const CurveNodes = 48
+// Rows of a curve. A place among those of a loading is found by halving, so they are
+// a power of two.
+const (
+	LoadingNodes = 64
+	potNodes     = 40 // of a trap or a forerun
+)
 
 // Follow is what a reader needs to follow the routes of a lot by closed forms.
 type Follow struct {
@@ -189,17 +192,17 @@ func finiteOnly(all []float64) []float64 {
 
 // filled puts waters among evenly spaced ones so that a curve gets its number of
 // nodes.
-func filled(waters []float64, spaced func(count int) []float64) []float64 {
-	if len(spaced(CurveNodes)) == 0 {
+func filled(nodes int, waters []float64, spaced func(count int) []float64) []float64 {
+	if len(spaced(nodes)) == 0 {
 		return nil
 	}
-	for count := CurveNodes; count > 8; count-- {
+	for count := nodes; count > 8; count-- {
 		all := steps.WithNodes(spaced(count), waters...)
-		if len(all) <= CurveNodes {
+		if len(all) <= nodes {
 			return all
 		}
 	}
-	return spaced(CurveNodes) // more water contents than nodes
+	return spaced(nodes) // more water contents than nodes
 }
 
 const (
@@ -217,7 +220,7 @@ func (f *follower) loadingCurve(agent string, waters []float64) Curve {
 	room := f.Job.Site.RoomK
 	low, high := slices.Min(waters)*drierThanSeen, math.Min(0.9, slices.Max(waters)*wetterThanSeen)
 	curve := Curve{Kind: steps.Soak, Agent: agent}
-	for _, w := range filled(waters, func(n int) []float64 { return steps.SpacedWaters(low, high, n) }) {
+	for _, w := range filled(LoadingNodes, waters, func(n int) []float64 { return steps.SpacedWaters(low, high, n) }) {
 		activity := math.Min(1, f.Mixture.Activity(w, room))
 		pressurePa := activity * f.Mixture.Water.VapourPressurePa.At(room)
 		curve.Rows = append(curve.Rows, []float64{w, activity, pores * a.Isotherm.LoadingKgPerKg(pressurePa, room)})
@@ -235,7 +238,7 @@ func (f *follower) trapCurve(receiverC float64, waters []float64) (Curve, error)
 	if x := trap.Azeotrope.Layers.XAqueous; x > 0 {
 		wettest = math.Min(wettest, 0.9*f.Mixture.MassFraction(x))
 	}
-	all := filled(waters, func(n int) []float64 { return steps.TrapWaters(trap, f.trapRules(), wettest, n) })
+	all := filled(potNodes, waters, func(n int) []float64 { return steps.TrapWaters(trap, f.trapRules(), wettest, n) })
 	nodes, err := steps.TrapTable(trap, f.trapRules(), f.Job.Site.RoomK, all)
 	for _, n := range nodes {
 		curve.Rows = append(curve.Rows, []float64{n.Water, n.BoiledMol, n.HeatJ, n.LnLeft, n.YWater, n.LatentJ, n.WarmWaterJ, n.WarmSolventJ})

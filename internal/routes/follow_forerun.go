@@ -19,7 +19,7 @@ func (f *follower) forerunCurve(stages int, waters []float64) (curve Curve, ok b
 		wettest = math.Min(wettest, math.Max(slices.Max(waters), 0.95*most))
 	}
 	driest := math.Min(slices.Min(waters), f.practice("trap-outlet-minimum"))
-	all := filled(waters, func(n int) []float64 { return steps.WetterWaters(driest, wettest, n) })
+	all := filled(potNodes, waters, func(n int) []float64 { return steps.WetterWaters(driest, wettest, n) })
 	nodes, ok := steps.ForerunTable(eq, f.forerunRig(stages), all)
 	curve = Curve{Kind: steps.Forerun, Stages: stages}
 	for _, n := range nodes {

@@ -221,10 +221,10 @@ func soakBlock() *liveBlock {
 	}...)
 	own = append(own, rateForDose()...)
 	own = append(own, []liveColumn{
-		{"feasible", "A dose reaches it", "1", "({df}>={from})*({h1}>0)*({kthigh}>{ktlow})"},
+		{"feasible", "A dose reaches it", "1", "({df}>={from})*({h2}>0)*({kthigh}>{ktlow})"},
 		{"exact", "Dose that reaches it", "kg/m3", "IFERROR({S}*({r0}-{x6}/(1-{x6}))/{h6}/{vol},{most})"},
 		{"dose", "Dose", "kg/m3", "IF({feasible}=1,MIN({most},MAX(site_least_dose,{exact})),{most})"},
-		{"solved", "Solved, or far under the least dose", "1", "MAX(1-{feasible},(ABS({g5}-{kt5})<={kt5}*job_tie*1000*1000)*1,({exact}+{exact}<site_least_dose)*1)"},
+		{"solved", "Solved, or far under the least dose", "1", "MAX(1-{feasible},(ABS({h6}-{h5})<={h6}*job_tie*1000*1000)*1,({exact}+{exact}<site_least_dose)*1)"},
 		{"meets", "Dosed to reach it", "1", "{feasible}*({exact}>=site_least_dose)*({exact}<={most})"},
 		{"m", "Sieve", "kg", "{dose}*{vol}"}, {"all", "Water to share", "kg", "{S}*{r0}+{m}*{q0}"},
 	}...)
@@ -248,20 +248,21 @@ func soakBlock() *liveBlock {
 //	x = (goal - w exp(-K t)) / (1 - exp(-K t))
 //
 // A dose in equilibrium with x holds m (q(x) - q0) = S (r0 - x/(1-x)), and with that
-// dose K t is t / (rm + vol/(kb m)). What K t leads to so falls as K t rises, and it
-// is sought where it leads to itself: by secants, which stay between the nodes.
+// dose the time is K t (rm + vol/(kb m)). Between two nodes it is nearly a straight
+// line over K t, whether x comes near the goal or is far below it; it is brought to
+// the time there is by secants from both ends.
 func rateForDose() (out []liveColumn) {
-	const secant = "IFERROR(MAX({ktlow},MIN({kthigh},{kt#}+({g#}-{kt#})/(1-({g#}-{g@})/({kt#}-{kt@})))),{g#})"
+	const secant = "IFERROR(MAX({ktlow},MIN({kthigh},{kt#}-{over#}*({kt#}-{kt@})/({over#}-{over@}))),{kt#})"
 	for i := 1; i <= 6; i++ {
 		next := strings.NewReplacer("#}", fmt.Sprintf("%d}", i-1), "@}", fmt.Sprintf("%d}", i-2)).Replace(secant)
 		if i <= 2 {
-			next = []string{"{kthigh}", "MAX({ktlow},{g1})"}[i-1]
+			next = []string{"{ktlow}", "{kthigh}"}[i-1]
 		}
 		point := []liveColumn{
 			{"kt#", "K t, try #", "1", next},
 			{"x#", "Equilibrium, try #", "kg/kg", "({goal}-{w}*EXP(-{kt#}))/(1-EXP(-{kt#}))"},
 			{"h#", "Held more, try #", "kg/kg", "{qa}+{slope}*({x#}-{wa})-{q0}"},
-			{"g#", "Leads to K t", "1", "IF({h#}>0,MIN({kthigh},{t}/({rm}+{vk}*{h#}/({r0}-{x#}/(1-{x#})))),{kthigh})"},
+			{"over#", "Time over, try #", "s", "{kt#}*({rm}+{vk}*{h#}/({r0}-{x#}/(1-{x#})))-{t}"},
 		}
 		if i == 6 {
 			point = point[:3]

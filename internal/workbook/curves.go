@@ -48,8 +48,7 @@ func (l *layout) searchSteps(g *grid) {
 	row := frameRows + 2
 	g.put(1, row, text(block, "Strides in which a place in a curve is found"))
 	for i, s := range halves {
-		half := 1 << (i + 1)
-		g.put(curveFirst+i, row, count((routes.CurveNodes+half-1)/half))
+		g.put(curveFirst+i, row, count(routes.LoadingNodes>>(i+1)))
 		l.name("half_"+s, sheetCurves, curveFirst+i, row)
 	}
 }
