@@ -170,17 +170,17 @@ func forerunBlock() *liveBlock {
 		constant("from", "Curve from row", "1"), constant("to", "Curve to row", "1"), constant("heel", "Heel", "1"), constant("driest", "Driest outlet", "kg/kg"), constant("setup", "Set-up", "s"),
 		constant("settle", "At total reflux", "s"), constant("shut", "Shut-down", "s"), constant("cold", "Fed cold", "1"),
 		{"nw", "Water", "mol", "{W}/{lot.mw}"}, {"ns", "Solvent", "mol", "{S}/{lot.ms}"}, {"end", "Run to", "kg/kg", "MIN({w},MAX({goal},{driest}))"},
-		{"i0", "Place of the feed", "1", placeIn("forerun_water", "w")}, {"f0", "Share of the feed", "1", shareIn("forerun_water", "i0", "w")},
-		{"i1", "Place at the end", "1", placeIn("forerun_water", "end")}, {"f1", "Share at the end", "1", shareIn("forerun_water", "i1", "end")},
-		{"ln0", "ln left, feed", "1", lookup("forerun_left", "i0", "f0")}, {"ln1", "ln left, end", "1", lookup("forerun_left", "i1", "f1")}, {"left", "Left of the charge", "1", "EXP({ln1}-{ln0})"},
-		{"q0", "Heat to the feed", "J/mol", lookup("forerun_heat", "i0", "f0")}, {"q1", "Heat to the end", "J/mol", lookup("forerun_heat", "i1", "f1")},
-		{"ww", "To warm water", "J/mol", lookup("forerun_warm_w", "i0", "f0")}, {"ws", "To warm solvent", "J/mol", lookup("forerun_warm_s", "i0", "f0")},
+		{"i0", "Place of the feed", "1", placeIn("draw_water", "w")}, {"f0", "Share of the feed", "1", shareIn("draw_water", "i0", "w")},
+		{"i1", "Place at the end", "1", placeIn("draw_water", "end")}, {"f1", "Share at the end", "1", shareIn("draw_water", "i1", "end")},
+		{"ln0", "ln left, feed", "1", lookup("draw_left", "i0", "f0")}, {"ln1", "ln left, end", "1", lookup("draw_left", "i1", "f1")}, {"left", "Left of the charge", "1", "EXP({ln1}-{ln0})"},
+		{"q0", "Heat to the feed", "J/mol", lookup("draw_heat", "i0", "f0")}, {"q1", "Heat to the end", "J/mol", lookup("draw_heat", "i1", "f1")},
+		{"ww", "To warm water", "J/mol", lookup("draw_warm_w", "i0", "f0")}, {"ws", "To warm solvent", "J/mol", lookup("draw_warm_s", "i0", "f0")},
 		{"x1", "Water at the end", "mol/mol", "{end}/{lot.mw}/({end}/{lot.mw}+(1-{end})/{lot.ms})"},
 		{"potW", "Water in the pot", "kg", "({nw}+{ns})*{left}*{x1}*{lot.mw}"}, {"potS", "Solvent in the pot", "kg", "({nw}+{ns})*{left}*(1-{x1})*{lot.ms}"},
 		{"boil", "Drawing off, all charges", "s", "({nw}+{ns})/EXP({ln0})*({q1}-{q0})/{lot.net}+{lot.charges}*{settle}"},
 		{"hot", "Hot, all charges", "s", "{cold}*({nw}*{ww}+{ns}*{ws})/{lot.net}+{boil}"}, {"lost", "Vapour lost", "1", "{vl}*{boil}/{lot.charges}"},
 		{"worth", "Less than half drawn off, little water", "1", "({S}-{potS}<{potS})*({W}-{potW}<={S}-{potS}+{S}*job_tie)"},
-		{"inside", "On the curve", "1", "({w}<=INDEX(forerun_water,{to})*(1+job_tie))*({end}>=INDEX(forerun_water,{from})*(1-job_tie))"},
+		{"inside", "On the curve", "1", "({w}<=INDEX(draw_water,{to})*(1+job_tie))*({end}>=INDEX(draw_water,{from})*(1-job_tie))"},
 	}))
 }
 
@@ -252,7 +252,7 @@ func soakBlock() *liveBlock {
 // line over K t, whether x comes near the goal or is far below it; it is brought to
 // the time there is by secants from both ends.
 func rateForDose() (out []liveColumn) {
-	const secant = "IFERROR(MAX({ktlow},MIN({kthigh},{kt#}-{over#}*({kt#}-{kt@})/({over#}-{over@}))),{kt#})"
+	const secant = "IFERROR(MAX({ktlow},MIN({kthigh},{kt#}-({time#}-{t})*({kt#}-{kt@})/({time#}-{time@}))),{kt#})"
 	for i := 1; i <= 6; i++ {
 		next := strings.NewReplacer("#}", fmt.Sprintf("%d}", i-1), "@}", fmt.Sprintf("%d}", i-2)).Replace(secant)
 		if i <= 2 {
@@ -262,7 +262,7 @@ func rateForDose() (out []liveColumn) {
 			{"kt#", "K t, try #", "1", next},
 			{"x#", "Equilibrium, try #", "kg/kg", "({goal}-{w}*EXP(-{kt#}))/(1-EXP(-{kt#}))"},
 			{"h#", "Held more, try #", "kg/kg", "{qa}+{slope}*({x#}-{wa})-{q0}"},
-			{"over#", "Time over, try #", "s", "{kt#}*({rm}+{vk}*{h#}/({r0}-{x#}/(1-{x#})))-{t}"},
+			{"time#", "Time it takes, try #", "s", "{kt#}*({rm}+{vk}*{h#}/({r0}-{x#}/(1-{x#})))"},
 		}
 		if i == 6 {
 			point = point[:3]

@@ -25,7 +25,7 @@ var curveKinds = []curveKind{
 		[]string{"trap_water", "trap_vapour_boiled", "trap_heat", "trap_left", "trap_vapour", "trap_latent", "trap_warm_w", "trap_warm_s"}},
 	{steps.Forerun, "Pot of a forerun: what is left and heat for one mole of the wettest pot", column{name: "Stages"},
 		[]column{{"Water in the pot", "kg/kg"}, {"ln of what is left", "1"}, {"Heat", "J/mol"}, {"To warm water", "J/mol"}, {"To warm solvent", "J/mol"}},
-		[]string{"forerun_water", "forerun_left", "forerun_heat", "forerun_warm_w", "forerun_warm_s"}},
+		[]string{"draw_water", "draw_left", "draw_heat", "draw_warm_w", "draw_warm_s"}},
 }
 
 const curveFirst = 4 // first column of the figures

@@ -122,9 +122,10 @@ func lookup(curve, place, share string) string {
 	return fmt.Sprintf("INDEX(%[1]s,{%[2]s})+{%[3]s}*(INDEX(%[1]s,{%[2]s}+1)-INDEX(%[1]s,{%[2]s}))", curve, place, share)
 }
 
-// placeIn is the node of a curve below a value: a row of all curves of its kind.
+// placeIn is the node of a curve below a value: a row of all curves of its kind. A
+// value is at a node but for the noise of the arithmetic.
 func placeIn(curve, value string) string {
-	return fmt.Sprintf("IFERROR(MIN(MATCH({%[2]s},INDEX(%[1]s,{from}):INDEX(%[1]s,{to}),1)+{from}-1,{to}-1),{from})", curve, value)
+	return fmt.Sprintf("IFERROR(MIN(MATCH({%[2]s}*(1+job_tie),INDEX(%[1]s,{from}):INDEX(%[1]s,{to}),1)+{from}-1,{to}-1),{from})", curve, value)
 }
 
 // shareIn is how far a water content lies between two nodes, in its logarithm.
