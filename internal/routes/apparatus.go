@@ -97,16 +97,21 @@ func (c *Case) Receivers() (keys []string) {
 }
 
 // MadeAndAssembled are a receiver made for the layer that a trap on this lot
-// returns, and one that is put together; "" where there is none.
-func (c *Case) MadeAndAssembled() (made, assembled string) {
-	if c.Trap == nil {
-		return "", ""
+// returns, with a carrier or without (""), and one that is put together; "" where
+// there is none.
+func (c *Case) MadeAndAssembled(carrier string) (made, assembled string) {
+	want := ""
+	switch {
+	case carrier != "":
+		want = string(c.carrierKnown(carrier).returns)
+	case c.Trap != nil:
+		want = string(c.Trap.Floor.Return)
 	}
-	for _, a := range c.receivers(c.Trap) {
+	for _, a := range c.receiversFor(want) {
 		switch {
 		case a.SetUp != nil && assembled == "":
 			assembled = a.Key
-		case a.SetUp == nil && a.Returns != "either" && made == "":
+		case a.SetUp == nil && a.Returns == want && made == "":
 			made = a.Key
 		}
 	}

@@ -125,15 +125,19 @@ func (c *Case) newCarrier(key string) (*steps.CarrierEquilibrium, error) {
 	return steps.NewCarrierEquilibrium(model, organic, doubt, c.Job.Site.ReceiverK, c.Job.Site.PressurePa)
 }
 
-// carrierReceiver is the first receiver, owned ones before others, that returns the
-// layer of the carrier's azeotrope.
-func (c *Case) carrierReceiver(key string) (*catalog.Apparatus, error) {
+// carrierReceiver is the named receiver, or the first, owned ones before others, that
+// returns the layer of the carrier's azeotrope.
+func (c *Case) carrierReceiver(key, receiver string) (*catalog.Apparatus, error) {
 	want := string(c.carrierKnown(key).returns)
-	all := c.receiversFor(want)
-	if len(all) == 0 {
-		return nil, fmt.Errorf("%w: no receiver returns the %s layer", steps.ErrNoCarrier, want)
+	for _, a := range c.receiversFor(want) {
+		if receiver == "" || a.Key == receiver {
+			return a, nil
+		}
 	}
-	return all[0], nil
+	if receiver != "" {
+		return nil, fmt.Errorf("%w: with %s the %s layer goes back, and %q does not return it", ErrSettings, key, want, receiver)
+	}
+	return nil, fmt.Errorf("%w: no receiver returns the %s layer", steps.ErrNoCarrier, want)
 }
 
 // CarrierDoses are the doses that a search tries, in kg per kg of solvent.
@@ -171,7 +175,7 @@ func (c *Case) boilWithCarrier(key string, lot steps.Lot, goal float64, choice c
 	if err != nil {
 		return steps.Outcome{}, err
 	}
-	receiver, err := c.carrierReceiver(key)
+	receiver, err := c.carrierReceiver(key, choice.receiver)
 	if err != nil {
 		return steps.Outcome{}, err
 	}

@@ -31,7 +31,7 @@ func (c *Case) singleCarrier(a Asked, s *Single) error {
 	if err != nil {
 		return err
 	}
-	receiver, err := c.carrierReceiver(a.Carrier)
+	receiver, err := c.carrierReceiver(a.Carrier, "")
 	if err != nil {
 		return err
 	}

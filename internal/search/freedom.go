@@ -46,7 +46,7 @@ func (t *Tuner) blank(r routes.Route) routes.Settings {
 				s.PressureKPa = append(s.PressureKPa, kPa)
 			}
 		case steps.Trap:
-			s.Receiver, s.ReceiverC = append(s.Receiver, ""), append(s.ReceiverC, 0)
+			s.Receiver, s.ReceiverC = append(s.Receiver, t.Receiver), append(s.ReceiverC, 0)
 			if stage.Carrier != "" {
 				s.CarrierDose = append(s.CarrierDose, routes.CarrierDoses[0])
 			}

@@ -389,9 +389,12 @@ func rivalOf(b BreakEven, cheapest func(x float64) (search.Won, error), now stri
 // receiver asks how often a trap has to be used in a year before a receiver made
 // for it costs less than one assembled from common glassware.
 func (q *question) receiver() (*BreakEven, error) {
-	made, assembled := q.k.MadeAndAssembled()
 	trapped := q.cheapestTrap()
-	if made == "" || assembled == "" || trapped == nil {
+	if trapped == nil {
+		return nil, nil
+	}
+	made, assembled := q.k.MadeAndAssembled(trapped.CarrierOf())
+	if made == "" || assembled == "" {
 		return nil, nil
 	}
 	b := BreakEven{Key: Receiver, Unit: "uses/yr", Now: q.lot.Job.BatchesPerYear, From: 0.2, To: 1000, What: "uses a year at which buying a receiver beats assembling one"}

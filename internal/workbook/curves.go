@@ -111,7 +111,7 @@ func curveOf(c routes.Curve) cell {
 // courseBlock shows how water falls in the steps of the first routes of a lot.
 func (l *layout) courseBlock(g *grid) {
 	row := g.table(g.next(), fmt.Sprintf("Course of the steps as the program ran them, for the first %d routes of a lot", coursesShown), []column{{name: "Lot"}, {name: "Route id"}, {"Step", "1"},
-		{"Hours", "h"}, {"Water", "mg/kg"}, {"Vapour boiled up", "kg"}, {"Drawn off", "L"}, {"Pot", "°C"}})
+		{"Hours", "h"}, {"Water", "mg/kg"}, {"Vapour boiled up", "kg"}, {"Drawn off", "L"}, {"Pot", "°C"}, {"Head", "°C"}, {"Aqueous layer", "mL"}, {"Solvent lost", "%"}})
 	first := row
 	for _, r := range l.routes {
 		if r.Rank < 1 || r.Rank > coursesShown {
@@ -123,6 +123,9 @@ func (l *layout) courseBlock(g *grid) {
 					number(cutTo(p.BoiledKg, 5), "kg").shown(decimals(3)), number(cutTo(p.DrawnM3*1000, 5), "L").shown(decimals(3)))
 				if p.PotK > 0 {
 					g.put(8, row, number(cutTo(p.PotK-273.15, 5), "°C").shown("0.0"))
+					g.put(9, row, number(cutTo(p.HeadK-273.15, 5), "°C").shown("0.0"))
+					g.put(10, row, number(cutTo(p.AqueousM3*1e6, 5), "mL").shown("0.0"))
+					g.put(11, row, number(cutTo(p.LostShare*100, 5), "%").shown("0.00"))
 				}
 				row++
 			}
