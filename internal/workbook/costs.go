@@ -276,12 +276,12 @@ func (l *layout) placeCells(g *grid, row, litre int, r *routeModel) {
 		return fmt.Sprintf("%s$%d:%s$%d", columnName(column), rr.first, columnName(column), rr.last)
 	}
 	ranked := func(column int) string { return in(l.rankRows, column) }
-	level := fmt.Sprintf("(%s=C%d)", ranked(rankContest), row)
-	g.put(rankAhead, row, whole(fmt.Sprintf("SUMPRODUCT(%s*(%s<H%d*(1-job_tie)))", level, ranked(rankObjective), row), r.ahead[0]))
-	level += fmt.Sprintf("*(%s=J%d)", ranked(rankAhead), row)
-	g.put(rankAhead+1, row, whole(fmt.Sprintf("SUMPRODUCT(%s*(%s<F%d*(1-job_tie)))", level, in(l.litreRows, litreCost), litre), r.ahead[1]))
-	level += fmt.Sprintf("*(%s=K%d)", ranked(rankAhead+1), row)
-	g.put(rankAhead+2, row, whole(fmt.Sprintf("SUMPRODUCT(%s*(%s<I%d))", level, ranked(rankOrder), row), r.ahead[2]))
+	level := fmt.Sprintf("%s,C%d", ranked(rankContest), row)
+	g.put(rankAhead, row, whole(fmt.Sprintf(`COUNTIFS(%s,%s,"<"&H%d*(1-job_tie))`, level, ranked(rankObjective), row), r.ahead[0]))
+	level += fmt.Sprintf(",%s,J%d", ranked(rankAhead), row)
+	g.put(rankAhead+1, row, whole(fmt.Sprintf(`COUNTIFS(%s,%s,"<"&F%d*(1-job_tie))`, level, in(l.litreRows, litreCost), litre), r.ahead[1]))
+	level += fmt.Sprintf(",%s,K%d", ranked(rankAhead+1), row)
+	g.put(rankAhead+2, row, whole(fmt.Sprintf(`COUNTIFS(%s,%s,"<"&I%d)`, level, ranked(rankOrder), row), r.ahead[2]))
 	g.put(rankPlace, row, whole(fmt.Sprintf(`IF(F%d="yes",1+J%d+K%d+L%d,0)`, row, row, row, row), r.rank))
 	g.put(rankSharing, row, whole(fmt.Sprintf("COUNTIFS(%s,G%d,%s,M%d)", ranked(rankContest), row, ranked(rankPlace), row), r.sharing))
 	g.put(rankRun, row, count(r.Rank))

@@ -4,6 +4,7 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"strconv"
 	"strings"
 
 	"github.com/xuri/excelize/v2"
@@ -331,6 +332,8 @@ func textOf(v any) string {
 		return ""
 	case string:
 		return x
+	case float64:
+		return strconv.FormatFloat(tidy(x), 'G', -1, 64)
 	}
 	return fmt.Sprint(v)
 }

@@ -5,6 +5,7 @@ import (
 	"math"
 	"slices"
 	"sort"
+	"strconv"
 
 	"github.com/shopspring/decimal"
 )
@@ -304,12 +305,18 @@ func (e *evaluator) conditional(n *node, here spot) any {
 		if !ok || column.c1 != column.c2 {
 			return noValue
 		}
-		criteria = append(criteria, criterion{column, e.rowsWith(column, e.single(e.eval(rest[i+1], here)))})
+		criteria = append(criteria, e.criterion(column, e.single(e.eval(rest[i+1], here))))
 	}
-	sort.SliceStable(criteria, func(i, j int) bool { return len(criteria[i].rows) < len(criteria[j].rows) })
+	sort.SliceStable(criteria, func(i, j int) bool { return criteria[i].size() < criteria[j].size() })
+	rows := criteria[0].rows
+	if c := criteria[0]; c.compare != "" { // no equality to begin with
+		for i := range c.column.r2 - c.column.r1 + 1 {
+			rows = append(rows, i)
+		}
+	}
 	total := 0.0
-	for _, row := range criteria[0].rows {
-		if slices.ContainsFunc(criteria[1:], func(c criterion) bool { _, found := slices.BinarySearch(c.rows, row); return !found }) {
+	for _, row := range rows {
+		if slices.ContainsFunc(criteria, func(c criterion) bool { return !c.holds(e.cell(c.column.g, c.column.c1, c.column.r1+row)) }) {
 			continue
 		}
 		if sum.g == nil {
@@ -327,10 +334,41 @@ func (e *evaluator) conditional(n *node, here spot) any {
 	return total
 }
 
-// criterion is a column and its rows, from 0, that hold the value asked for.
+// criterion is a column and what its rows are asked for.
 type criterion struct {
-	column ref
-	rows   []int
+	column  ref
+	compare string // ">" or "<", "" for equality
+	value   any
+	rows    []int // from 0, in which an equality holds
+}
+
+func (c criterion) size() int {
+	if c.compare != "" {
+		return math.MaxInt
+	}
+	return len(c.rows)
+}
+
+func (c criterion) holds(v any) bool {
+	if c.compare == "" {
+		return v == c.value
+	}
+	x, isNumber := v.(float64)
+	limit, _ := c.value.(float64)
+	return isNumber && (c.compare == ">" && x > limit || c.compare == "<" && x < limit)
+}
+
+// criterion reads what a column is asked for: a value, or a text such as "<5".
+func (e *evaluator) criterion(column ref, asked any) criterion {
+	s, isText := asked.(string)
+	if !isText || len(s) < 2 || s[0] != '>' && s[0] != '<' {
+		return criterion{column, "", asked, e.rowsWith(column, asked)}
+	}
+	limit, err := strconv.ParseFloat(s[1:], 64)
+	if err != nil {
+		e.fail(fmt.Errorf("%q is no comparison", s))
+	}
+	return criterion{column: column, compare: s[:1], value: limit}
 }
 
 // rowsWith are the rows of a column, from 0, that hold a value.
@@ -344,16 +382,6 @@ func (e *evaluator) rowsWith(column ref, value any) []int {
 			known[v] = append(known[v], i)
 		}
 		e.rowsOf[key] = known
-	}
-	if s, isText := value.(string); isText && len(s) > 1 && s[0] == '>' {
-		var rows []int
-		for v, list := range known {
-			if x, isNumber := v.(float64); isNumber && x > 0 {
-				rows = append(rows, list...)
-			}
-		}
-		sort.Ints(rows)
-		return rows
 	}
 	return known[value]
 }
