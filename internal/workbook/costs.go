@@ -18,12 +18,12 @@ const (
 	billBatch  = 10
 	billPrice  = 11
 	billAmount = 12
-	billBasis  = 13
-	billPlace  = 14 // of the quantity on Steps
-	billColumn = 15
-	billTimes  = 16
-	billFactor = 17
-	billCarbon = 18
+	billPlace  = 13 // of the quantity on Steps
+	billColumn = 14
+	billTimes  = 15
+	billFactor = 16
+	billCarbon = 17
+	billBasis  = 18
 )
 
 // Columns of the blocks below the bill.
@@ -65,8 +65,8 @@ var headNames = map[steps.Head]string{
 
 func (l *layout) costs() *grid {
 	g := newGrid(sheetCosts, "The bill of each route: quantity × price = amount, for one batch. Below the lines: cost by head, cost per litre, target and rank. Amounts are exact and shown to a hundredth of a cent; the bill is rounded once, where it is written to the cent.",
-		tabWork, checkCell(), 26, 30, 10, 13, 12, 17, 11, 11, 11, 11, 11, 11, 52, 9, 9, 12, 11, 11)
-	g.printColumns = billBasis
+		tabWork, checkCell(), 26, 30, 10, 13, 12, 17, 11, 11, 11, 11, 11, 11, 11, 11, 11, 12, 12, 52)
+	g.printColumns = rankRun
 	g.mixed, g.frozenRows, g.frozenColumns = true, frameRows, 3 // the blocks share only these columns
 	l.billBlock(g)
 	l.headBlock(g)
@@ -82,8 +82,8 @@ func (l *layout) costs() *grid {
 func (l *layout) billBlock(g *grid) {
 	first := g.table(frameRows+2, "Lines of the bill", []column{{name: "Lot"}, {name: "Route id"}, {"Route no", "1"}, {name: "Head"}, {"Step, 0 for the route", "1"},
 		{name: "Item"}, {"Quantity", "1"}, {name: "Unit"}, {name: "Counted per"}, {"Quantity per batch", "1"},
-		{"Price of a unit", l.currency()}, {"Amount", l.currency()}, {name: "Basis"},
-		{"Row on Steps", "1"}, {"Column on Steps", "1"}, {"Times", "1"}, {"Emissions of a unit", "kg CO2e"}, {"Emissions", "kg CO2e"}})
+		{"Price of a unit", l.currency()}, {"Amount", l.currency()},
+		{"Row on Steps", "1"}, {"Column on Steps", "1"}, {"Times", "1"}, {"Emissions of a unit", "kg CO2e"}, {"Emissions", "kg CO2e"}, {name: "Basis"}})
 	l.names = append(l.names, definedName{"steps_uses", l.usesArea()})
 	row := first
 	for _, r := range l.routes {
@@ -108,8 +108,8 @@ func (l *layout) billRow(g *grid, row int, r *routeModel, line lineModel) {
 			formula: fmt.Sprintf("INDEX(steps_uses,%s,%s)*%s", at(billPlace, row), at(billColumn, row), at(billTimes, row))}, text(plain, symbol(line.Unit)), text(plain, per),
 		derived(fmt.Sprintf(`%s/IF(%s="year",%s,1)`, at(billQty, row), at(billPer, row), l.lotName(r.lot, "batches_per_year")), line.perBatch).in(symbol(line.Unit)).shown(quantity),
 		derived(priceName(line.Item, line.Unit), line.price).in(l.money(line.Unit)).shown(l.priceFormat()),
-		derived(at(billBatch, row)+"*"+at(billPrice, row), line.amount).in(l.currency()).shown(exactMoney),
-		text(words, line.Basis))...)
+		derived(at(billBatch, row)+"*"+at(billPrice, row), line.amount).in(l.currency()).shown(exactMoney))...)
+	g.put(billBasis, row, text(words, line.Basis))
 	place, column, times, _ := l.useOf(r, line)
 	g.put(billPlace, row, count(place-l.lotRows.rows.first+1))
 	g.put(billColumn, row, count(column))

@@ -209,5 +209,5 @@ const (
 	checksHold    = "All checks hold"
 	runAgain      = "run parch again"
 	follows       = "the sheet follows"
-	followsWithin = "the sheet follows, within its curves"
+	followsWithin = "follows within its curves"
 )
