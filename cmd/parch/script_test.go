@@ -10,6 +10,7 @@ import (
 	"strconv"
 	"strings"
 	"testing"
+	"time"
 
 	"github.com/rogpeppe/go-internal/testscript"
 )
@@ -24,9 +25,12 @@ func TestScript(t *testing.T) {
 	testscript.Run(t, testscript.Params{
 		Dir: "testdata/script",
 		Cmds: map[string]func(*testscript.TestScript, bool, []string){
-			"status":   status,
-			"value":    value,
-			"nonsense": nonsense,
+			"status":    status,
+			"value":     value,
+			"nonsense":  nonsense,
+			"edit":      edit,
+			"stopwatch": stopwatch,
+			"within":    within,
 		},
 		Condition: func(name string) (bool, error) {
 			if name == "root" {
@@ -56,6 +60,41 @@ func status(ts *testscript.TestScript, neg bool, args []string) {
 	}
 	if got != want {
 		ts.Fatalf("exit status %d, want %d", got, want)
+	}
+}
+
+// edit FILE OLD NEW changes the one place where OLD stands.
+func edit(ts *testscript.TestScript, neg bool, args []string) {
+	if neg || len(args) != 3 {
+		ts.Fatalf("usage: edit file old new")
+	}
+	text := ts.ReadFile(args[0])
+	if n := strings.Count(text, args[1]); n != 1 {
+		ts.Fatalf("%q stands in %s %d times", args[1], args[0], n)
+	}
+	ts.Check(os.WriteFile(ts.MkAbs(args[0]), []byte(strings.Replace(text, args[1], args[2], 1)), 0o644))
+}
+
+const startedAt = "STARTED_AT"
+
+// stopwatch begins to count for within.
+func stopwatch(ts *testscript.TestScript, _ bool, _ []string) {
+	ts.Setenv(startedAt, time.Now().Format(time.RFC3339Nano))
+}
+
+// within TIME tells the time since stopwatch, which must not be longer.
+func within(ts *testscript.TestScript, neg bool, args []string) {
+	if neg || len(args) != 1 {
+		ts.Fatalf("usage: within time")
+	}
+	most, err := time.ParseDuration(args[0])
+	ts.Check(err)
+	started, err := time.Parse(time.RFC3339Nano, ts.Getenv(startedAt))
+	ts.Check(err)
+	took := time.Since(started)
+	ts.Logf("done after %v", took.Round(time.Millisecond))
+	if took > most {
+		ts.Fatalf("took %v, longer than %v", took, most)
 	}
 }
 

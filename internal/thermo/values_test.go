@@ -328,3 +328,15 @@ func TestFractionsOfThree(t *testing.T) {
 		t.Errorf("density %g, want %g", got, want)
 	}
 }
+
+// BenchmarkProperty evaluates five properties of a liquid.
+func BenchmarkProperty(b *testing.B) {
+	p := mixture(b, "toluene").Solvent
+	sum := 0.0
+	for b.Loop() {
+		sum += p.VapourPressurePa.At(330) + p.HeatOfVaporizationJ.At(330) + p.HeatCapacityJPerMolK.At(330) + p.DensityKgPerM3.At(330) + p.ViscosityPaS.At(330)
+	}
+	if math.IsNaN(sum) {
+		b.Fatal(sum)
+	}
+}
