@@ -77,7 +77,7 @@ func (p *program) runCompare(c *cli.Context) error {
 	opts.Draws, opts.Seed = int(c.Uint("draws")), c.Uint64("seed")
 	done, stop := p.progressBar(q.quiet)
 	opts.Progress = done
-	r, err := study.Compare(c.Context, j, cat, opts)
+	r, err := interruptible(c.Context, func() (*study.Report, error) { return study.Compare(c.Context, j, cat, opts) })
 	stop()
 	if err != nil {
 		return failed(err)
@@ -187,35 +187,48 @@ func (p *program) tunedAnew(from string, opts study.Options, r *study.Report) {
 // deliver writes the files and prints the result. The result is printed even if
 // a file cannot be written: nothing that was computed is lost.
 func (p *program) deliver(ctx context.Context, q request, r *study.Report) error {
-	var book, doc bytes.Buffer
-	tables, err := report.Tables(r)
-	err = errors.Join(err, workbook.Write(&book, r.Priced()), report.JSON(&doc, r))
+	f, err := interruptible(ctx, func() (*files, error) { return filled(r) })
 	opts := report.Options{}
 	if err == nil {
 		d := p.disk
 		d.force = q.force
-		opts, err = q.writeFiles(ctx, d, book.Bytes(), doc.Bytes(), tables)
+		opts, err = q.writeFiles(ctx, d, f)
+	}
+	if errors.Is(err, context.Canceled) {
+		return failed(err)
 	}
 	opts.All = q.all
-	return errors.Join(failed(err), failed(p.print(q, r, opts, doc.Bytes())), unreached(r))
+	return errors.Join(failed(err), failed(p.print(q, r, opts, f.doc.Bytes())), unreached(r))
 }
 
-func (q *request) writeFiles(ctx context.Context, d disk, book, doc []byte, tables []report.Table) (opts report.Options, err error) {
+// files are what a comparison writes.
+type files struct {
+	book, doc bytes.Buffer
+	tables    []report.Table
+}
+
+func filled(r *study.Report) (f *files, err error) {
+	f = &files{}
+	f.tables, err = report.Tables(r)
+	return f, errors.Join(err, workbook.Write(&f.book, r.Priced()), report.JSON(&f.doc, r))
+}
+
+func (q *request) writeFiles(ctx context.Context, d disk, f *files) (opts report.Options, err error) {
 	if err := ctx.Err(); err != nil {
 		return opts, err
 	}
-	if err := d.write(q.workbook, book); err != nil {
+	if err := d.write(q.workbook, f.book.Bytes()); err != nil {
 		return opts, err
 	}
 	opts.Workbook = q.workbook
 	if q.json != "" && q.json != "-" {
-		if err := d.write(q.json, doc); err != nil {
+		if err := d.write(q.json, f.doc.Bytes()); err != nil {
 			return opts, err
 		}
 		opts.JSON = q.json
 	}
 	if q.csv != "" {
-		if err := d.writeTables(q.csv, tables); err != nil {
+		if err := d.writeTables(q.csv, f.tables); err != nil {
 			return opts, err
 		}
 		opts.CSV = q.csv

@@ -154,7 +154,7 @@ func strike(t *testing.T, f fault, old bool) {
 	}
 	d, struck := faultyDisk(f)
 	d.force = old
-	_, err := q.writeFiles(context.Background(), d, book, doc, tables)
+	_, err := q.writeFiles(context.Background(), d, &files{*bytes.NewBuffer(book), *bytes.NewBuffer(doc), tables})
 	if !*struck {
 		t.Fatal("the fault did not strike")
 	}
