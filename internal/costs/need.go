@@ -90,6 +90,16 @@ func (p Plan) charge(use routes.StageUse) float64 {
 	return use.Quantity
 }
 
+// lotsOver is how many lots share the charge that a use of agent stands for.
+func (p Plan) lotsOver(use routes.StageUse) float64 {
+	if at := use.Stage - 1; at >= 0 && at < len(p.Run.Outcomes) && p.Run.Outcomes[at].Agent == use.Item {
+		if n := p.Run.Outcomes[at].Figure(steps.LotsServed); n > 1 {
+			return n
+		}
+	}
+	return 1
+}
+
 // MostOfEach is a year's need of each item by the plan that uses most of it among
 // those of a lot, added up over the lots: the need that PackRule speaks of.
 func MostOfEach(lots [][]Plan) map[string]float64 {

@@ -63,7 +63,8 @@ func (a *Arrangement) Yearly(cat *catalog.Catalog, j *job.Job, book Book, plan P
 	}
 	for _, use := range plan.Run.Uses {
 		if use.Head == steps.Agent && use.Quantity > 0 {
-			y.Regenerations += plan.BatchesPerYear * (1 - use.Quantity/max(plan.charge(use), use.Quantity))
+			lots := plan.lotsOver(use)
+			y.Regenerations += plan.BatchesPerYear / lots * (1 - lots*use.Quantity/max(plan.charge(use), lots*use.Quantity))
 		}
 	}
 	return y, nil

@@ -79,6 +79,11 @@ func readSettings(raw json.RawMessage) (routes.Settings, error) {
 	if slices.ContainsFunc(s.SoakHours, negative) {
 		problems = append(problems, fmt.Errorf("soak_hours is negative: %v", s.SoakHours))
 	}
+	for name, counts := range map[string][]int{"charges": s.Charges, "lots_over_charge": s.LotsOverCharge} {
+		if slices.ContainsFunc(counts, func(n int) bool { return n < 0 }) {
+			problems = append(problems, fmt.Errorf("%s is negative: %v", name, counts))
+		}
+	}
 	for _, word := range s.Sieve {
 		if word != routes.Regenerate && word != routes.Discard {
 			problems = append(problems, fmt.Errorf("sieve is %q; allowed: %q, %q", word, routes.Regenerate, routes.Discard))

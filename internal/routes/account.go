@@ -57,11 +57,11 @@ func (c *Case) account(place int, o steps.Outcome, choice choice) []StageUse {
 		still, _ := c.Still()
 		uses = append(uses, c.wear(place, still, 1)...)
 	case steps.Soak:
-		uses = append(uses, c.sieveUses(place, o, choice.after)...)
+		uses = append(uses, c.sieveUses(place, o, choice)...)
 		vessel, count := c.vessel()
 		uses = append(uses, c.wear(place, vessel, count)...)
 	case steps.Column:
-		uses = append(uses, c.sieveUses(place, o, choice.after)...)
+		uses = append(uses, c.sieveUses(place, o, choice)...)
 		uses = append(uses, c.wear(place, c.Catalog.Apparatus[o.Apparatus], 1)...)
 	case steps.Buy:
 		use(steps.Purchase, c.Solvent.Key+"-dry", "litre", c.Lot.BatchM3*1e3, "the batch bought dry")
@@ -84,11 +84,12 @@ func energyBasis(kind steps.Kind) string {
 
 // sieveUses is the sieve's share per use: its price over its lives, the oven
 // run shared by the oven's load, the solvent-wet beads when they are discarded.
-func (c *Case) sieveUses(place int, o steps.Outcome, after string) []StageUse {
+func (c *Case) sieveUses(place int, o steps.Outcome, choice choice) []StageUse {
 	agent := c.Catalog.Agents[o.Agent]
-	lives := 1.0
-	if after == Regenerate {
-		lives = agent.Lives.SI
+	lots := float64(max(1, choice.lots))
+	lives := lots
+	if choice.after == Regenerate {
+		lives *= agent.Lives.SI
 	}
 	uses := []StageUse{{place, steps.Use{
 		Head: steps.Agent, Item: o.Agent, Unit: "kg", Quantity: o.AgentKg / lives,
@@ -96,13 +97,13 @@ func (c *Case) sieveUses(place int, o steps.Outcome, after string) []StageUse {
 	}}}
 	heldKg := 0.0
 	for _, l := range o.Losses {
-		heldKg += l.SolventKg
+		heldKg += l.SolventKg * lots // each lot bears its share of what the charge holds
 	}
 	uses = append(uses, StageUse{place, steps.Use{
 		Head: steps.Waste, Item: c.WasteItem(steps.WetSolidWaste), Unit: "kg", Quantity: (o.AgentKg + heldKg) / lives,
 		Basis: "solvent-wet beads, discarded after their last use",
 	}})
-	if oven, runs := c.ovenRuns(o.AgentKg, after); runs > 0 {
+	if oven, runs := c.ovenRuns(o.AgentKg/lots, choice.after); runs > 0 {
 		uses = append(uses,
 			StageUse{place, steps.Use{
 				Head: steps.Energy, Item: "electricity", Unit: "kwh", Quantity: runs * oven.Energy.SI / 3.6e6,

@@ -229,6 +229,17 @@ func (c *Case) refuseBuy() (reason, source string) {
 	return fmt.Sprintf("no price for dry %s", c.Solvent.Name), ""
 }
 
+// inWhatWay says what is not plain of a soak.
+func inWhatWay(choice choice) string {
+	switch {
+	case choice.charges > 1:
+		return fmt.Sprintf(" in %d charges", choice.charges)
+	case choice.lots > 1:
+		return fmt.Sprintf(", %d lots over a charge", choice.lots)
+	}
+	return ""
+}
+
 // Label is a route in words.
 func (c *Case) Label(r Route, settings Settings) string {
 	parts := make([]string, len(r))
@@ -250,6 +261,7 @@ func (c *Case) Label(r Route, settings Settings) string {
 			if settings.at(r, i).stirred {
 				parts[i] = "stir over " + c.Catalog.Agents[s.Agent].Name
 			}
+			parts[i] += inWhatWay(settings.at(r, i))
 		case steps.Column:
 			parts[i] = "pump through " + c.Catalog.Agents[s.Agent].Name
 		case steps.Reactive:

@@ -117,18 +117,18 @@ func (c *Case) soakOver(lot steps.Lot, kg float64, agent string, choice choice) 
 	if choice.stirred {
 		rate = c.drawn.StirredRate
 	}
-	timeS := choice.soakHours * 3600
-	rig := c.soakRig(choice.stirred)
+	timeS, charges := choice.soakHours*3600, max(1, choice.charges)
+	rig := c.soakRigOf(choice)
 	rig.CondensationPerS /= rate
-	o, err := steps.SoakOver(c.Mixture, lot, kg/steps.LotVolume(c.Mixture, lot, c.Job.Site.RoomK), math.Min(timeS*rate, longestSoakHours*3600), c.sorbent(agent, choice.after), rig)
+	o, err := c.standOver(lot, charges, kg/steps.LotVolume(c.Mixture, lot, c.Job.Site.RoomK), math.Min(timeS*rate, longestSoakHours*3600), c.sorbent(agent, choice.after), rig)
 	if errors.Is(err, steps.ErrWetSieve) {
-		return c.asWetAsItWas(lot, kg, agent, timeS, choice), nil
+		return c.asWetAsItWas(lot, kg, agent, float64(charges)*timeS, choice), nil
 	}
-	o.HoursTotal += timeS/3600 - o.Course[len(o.Course)-1].Hours
-	if choice.stirred {
-		_, vessels := c.vessel()
-		o.EnergyKWh += float64(vessels) * c.practice("stirrer-power") * choice.soakHours / 1e3
+	if err != nil {
+		return o, err
 	}
+	o.HoursTotal += float64(charges)*timeS/3600 - o.Course[len(o.Course)-1].Hours
+	o.EnergyKWh += c.stirrerKWh(choice)
 	return o, err
 }
 
@@ -136,9 +136,9 @@ func (c *Case) soakOver(lot steps.Lot, kg float64, agent string, choice choice) 
 // off no drier, and costs what it costs.
 func (c *Case) asWetAsItWas(lot steps.Lot, kg float64, agent string, timeS float64, choice choice) steps.Outcome {
 	s, rig := c.sorbent(agent, choice.after), c.soakRig(choice.stirred)
-	heldKg := math.Min(kg*s.HoldUpM3PerKg*c.Mixture.Solvent.DensityKgPerM3.At(rig.TempK), lot.SolventKg)
+	heldKg := math.Min(kg*s.HoldUpM3PerKg*c.Mixture.Solvent.DensityKgPerM3.At(rig.TempK), lot.SolventKg) / float64(max(1, choice.lots))
 	kept := 1 - heldKg/lot.SolventKg
-	attended := float64(rig.Vessels) * rig.AttendedS / 3600
+	attended := float64(rig.Vessels*max(1, choice.charges)) * rig.AttendedS / 3600
 	return steps.Outcome{
 		Kind: steps.Soak, Agent: agent, In: lot, AgentKg: kg, Why: steps.AtFloor,
 		Out:        steps.Lot{SolventKg: lot.SolventKg * kept, WaterKg: lot.WaterKg * kept, TempK: rig.TempK},
@@ -200,7 +200,7 @@ func (c *Case) aim(s Settings) float64 {
 // QuickSoak is the soak of a run at a place, for many draws.
 func (c *Case) QuickSoak(run *Run, place int) (*steps.QuickSoak, error) {
 	o, choice := &run.Outcomes[place], run.Settings.at(run.Route, place)
-	return steps.NewQuickSoak(c.Mixture, o.In, o.AgentKg, choice.soakHours*3600, c.sorbent(o.Agent, choice.after), c.soakRig(choice.stirred))
+	return steps.NewQuickSoak(c.Mixture, o.In, o.AgentKg, choice.soakHours*3600, choice.charges, c.sorbent(o.Agent, choice.after), c.soakRigOf(choice))
 }
 
 // StirredAt reports whether the soak of a run at a place is stirred.

@@ -23,7 +23,15 @@ func (f *follower) constants(run *Run, i int, stage Stage) Constants {
 	case steps.Salt:
 		return f.saltConstants(stage.Agent, o)
 	case steps.Soak:
-		return f.soakConstants(stage.Agent)
+		choice := run.Settings.at(run.Route, i)
+		if choice.charges > 1 {
+			return nil // the dose of a series has no closed form
+		}
+		k := f.soakConstants(stage.Agent)
+		if k != nil {
+			k["lots"] = float64(max(1, choice.lots))
+		}
+		return k
 	case steps.Column:
 		return f.columnConstants(stage.Agent, o)
 	case steps.Reactive:
@@ -116,7 +124,7 @@ const saltPairs = 3
 // sieveConstants are those of soaks and columns alike.
 func (f *follower) sieveConstants(agent string) Constants {
 	a := f.Catalog.Agents[agent]
-	k := Constants{"uses": a.Lives.SI, "fade": a.Fade.SI, "hold-up m3/kg": a.HoldUp.SI, "largest kg/m3": a.MaxDose.SI, "oven kg": 1}
+	k := Constants{"uses": a.Lives.SI, "fade": a.Fade.SI, "hold-up m3/kg": a.HoldUp.SI, "largest kg/m3": a.MaxDose.SI, "oven kg": 1, "lots": 1}
 	if ovens := f.pieces("oven"); len(ovens) > 0 {
 		k["oven kg"], k["oven kWh"], k["oven h"], k["oven"] = ovens[0].Load.SI, ovens[0].Energy.SI/3.6e6, f.practice("oven-attended")/3600, 1
 	}

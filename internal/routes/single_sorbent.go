@@ -51,11 +51,15 @@ func (c *Case) soakOf(a Asked) (steps.Sorbent, steps.SoakRig) {
 
 // over stands the lot over a dose, whole or in equal charges that each have the time.
 func (c *Case) over(a Asked, doseKgPerM3, timeS float64, sorbent steps.Sorbent, rig steps.SoakRig) (steps.Outcome, error) {
-	if a.Charges <= 1 {
-		return steps.SoakOver(c.Mixture, c.Feed, doseKgPerM3, timeS, sorbent, rig)
+	return c.standOver(c.Feed, a.Charges, doseKgPerM3, timeS, sorbent, rig)
+}
+
+func (c *Case) standOver(lot steps.Lot, charges int, doseKgPerM3, timeS float64, sorbent steps.Sorbent, rig steps.SoakRig) (steps.Outcome, error) {
+	if charges <= 1 {
+		return steps.SoakOver(c.Mixture, lot, doseKgPerM3, timeS, sorbent, rig)
 	}
-	kg := doseKgPerM3 * steps.LotVolume(c.Mixture, c.Feed, rig.TempK)
-	return steps.SoakSeries(c.Mixture, c.Feed, steps.EqualCharges(a.Charges, kg, timeS), sorbent, rig)
+	kg := doseKgPerM3 * steps.LotVolume(c.Mixture, lot, rig.TempK)
+	return steps.SoakSeries(c.Mixture, lot, steps.EqualCharges(charges, kg, timeS), sorbent, rig)
 }
 
 // sizeSoak sizes the dose for each of the usual times, which each charge has to itself. The outcome is that of the

@@ -1,6 +1,7 @@
 package routes
 
 import (
+	"errors"
 	"fmt"
 	"math"
 	"slices"
@@ -14,12 +15,30 @@ func (c *Case) runSoak(lot steps.Lot, goal float64, agent string, choice choice)
 	if err := c.fitForBeads(lot, goal); err != nil {
 		return steps.Outcome{}, err
 	}
-	o, err := steps.SoakFor(c.Mixture, lot, goal, choice.soakHours*3600, c.sorbent(agent, choice.after), c.soakRig(choice.stirred))
-	if err == nil && choice.stirred {
-		_, vessels := c.vessel()
-		o.EnergyKWh += float64(vessels) * c.practice("stirrer-power") * choice.soakHours / 1e3
+	if choice.charges > 1 && choice.lots > 1 {
+		return steps.Outcome{}, refusal{errors.New("several charges in sequence are not used again as they are")}
+	}
+	o, err := steps.SeriesFor(c.Mixture, lot, goal, choice.soakHours*3600, choice.charges, c.sorbent(agent, choice.after), c.soakRigOf(choice))
+	if err == nil {
+		o.EnergyKWh += c.stirrerKWh(choice)
 	}
 	return o, err
+}
+
+// stirrerKWh is what stirring a soak takes, with all its charges.
+func (c *Case) stirrerKWh(choice choice) float64 {
+	if !choice.stirred {
+		return 0
+	}
+	_, vessels := c.vessel()
+	return float64(vessels) * c.practice("stirrer-power") * float64(max(1, choice.charges)) * choice.soakHours / 1e3
+}
+
+// soakRigOf is the vessel of a soak of a route.
+func (c *Case) soakRigOf(choice choice) steps.SoakRig {
+	rig := c.soakRig(choice.stirred)
+	rig.Lots = choice.lots
+	return rig
 }
 
 // fitForBeads refuses a sieve on a lot that is at its goal already, and on one in

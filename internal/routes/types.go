@@ -67,8 +67,10 @@ type choice struct {
 	kPa       float64 // of a forerun; 0: the site's
 	hot       bool    // the pot comes hot from the step before
 	goesOn    bool    // the next step takes the pot hot
-	soakHours float64
+	soakHours float64 // of each charge
 	stirred   bool
+	charges   int     // of sieve, one after the other; 0: one
+	lots      int     // over a charge of sieve before it is taken out; 0: one
 	after     string  // what is done with the sieve
 	receiver  string  // of a trap; "": the first that fits
 	receiverC float64 // 0: the coldest in reach
@@ -108,6 +110,12 @@ func (s Settings) at(r Route, i int) (c choice) {
 	if k := r[:i].count(steps.Soak); r[i].Kind == steps.Soak {
 		c.soakHours = s.SoakHours[k]
 		c.stirred = k < len(s.Stirred) && s.Stirred[k] // not given: still
+		if k < len(s.Charges) {
+			c.charges = s.Charges[k]
+		}
+		if k < len(s.LotsOverCharge) {
+			c.lots = s.LotsOverCharge[k]
+		}
 	}
 	if k := r[:i].count(steps.Soak, steps.Column); r[i].Kind == steps.Soak || r[i].Kind == steps.Column {
 		c.after = s.Sieve[k]
@@ -127,16 +135,18 @@ func (r Route) carriersBefore(i int) (n int) {
 
 // Settings are the free choices of a route. Doses follow from them.
 type Settings struct {
-	HandOverMgPerKg []float64 `json:"hand_over_mg_per_kg"`     // water after each stage but the last
-	SoakHours       []float64 `json:"soak_hours,omitempty"`    // one for each soak
-	Stages          []int     `json:"stages,omitempty"`        // of the column of each forerun; 0: a simple still
-	PressureKPa     []float64 `json:"pressure_kpa,omitempty"`  // of each forerun; 0, or not given: the site's
-	Stirred         []bool    `json:"stirred,omitempty"`       // one for each soak
-	Sieve           []string  `json:"sieve,omitempty"`         // "regenerate" or "discard", one for each soak or column
-	Receiver        []string  `json:"receiver,omitempty"`      // of each trap: key of the apparatus
-	ReceiverC       []float64 `json:"receiver_c,omitempty"`    // of each trap: temperature, °C
-	CarrierDose     []float64 `json:"carrier_dose,omitempty"`  // of each trap with a carrier: kg per kg of solvent
-	AimMgPerKg      float64   `json:"aim_mg_per_kg,omitempty"` // the last step is sized for it; 0: for the acceptance limit
+	HandOverMgPerKg []float64 `json:"hand_over_mg_per_kg"`        // water after each stage but the last
+	SoakHours       []float64 `json:"soak_hours,omitempty"`       // one for each soak
+	Stages          []int     `json:"stages,omitempty"`           // of the column of each forerun; 0: a simple still
+	PressureKPa     []float64 `json:"pressure_kpa,omitempty"`     // of each forerun; 0, or not given: the site's
+	Stirred         []bool    `json:"stirred,omitempty"`          // one for each soak
+	Charges         []int     `json:"charges,omitempty"`          // of sieve, one after the other, each for the hours of its soak; one for each soak; not given: one
+	LotsOverCharge  []int     `json:"lots_over_charge,omitempty"` // that go over a charge as it is before it is taken out; one for each soak; not given: one
+	Sieve           []string  `json:"sieve,omitempty"`            // "regenerate" or "discard", one for each soak or column
+	Receiver        []string  `json:"receiver,omitempty"`         // of each trap: key of the apparatus
+	ReceiverC       []float64 `json:"receiver_c,omitempty"`       // of each trap: temperature, °C
+	CarrierDose     []float64 `json:"carrier_dose,omitempty"`     // of each trap with a carrier: kg per kg of solvent
+	AimMgPerKg      float64   `json:"aim_mg_per_kg,omitempty"`    // the last step is sized for it; 0: for the acceptance limit
 
 	// Packs that set the prices of the route, by item, where there are several:
 	// chosen by the need of all lots, not tuned for the route.
@@ -189,9 +199,34 @@ func (s Settings) Fit(r Route) error {
 			return fmt.Errorf("%s: %w: a soak of %g h; above 0 to %d h are allowed", r.ID(), ErrSettings, h, longestSoakHours)
 		}
 	}
+	if err := s.fitCharges(r, soaks); err != nil {
+		return err
+	}
 	for _, after := range s.Sieve {
 		if after != Regenerate && after != Discard {
 			return fmt.Errorf("%s: %w: sieve %q is not one of %s, %s", r.ID(), ErrSettings, after, Regenerate, Discard)
+		}
+	}
+	return nil
+}
+
+// MostCharges of sieve are stood over one after the other.
+const MostCharges = 5
+
+// fitCharges reports charges of sieve and lots over a charge that do not exist.
+func (s Settings) fitCharges(r Route, soaks int) error {
+	if len(s.Charges) > soaks || len(s.LotsOverCharge) > soaks {
+		return fmt.Errorf("%s: %w: %d charges, %d lots over a charge for %d soaks", r.ID(), ErrSettings, len(s.Charges), len(s.LotsOverCharge), soaks)
+	}
+	for i := range r {
+		c := s.at(r, i)
+		switch {
+		case c.charges < 0 || c.charges > MostCharges:
+			return fmt.Errorf("%s: %w: %d charges of sieve; 1 to %d are allowed", r.ID(), ErrSettings, c.charges, MostCharges)
+		case c.lots < 0 || c.lots > steps.MostLots:
+			return fmt.Errorf("%s: %w: %d lots over a charge; 1 to %d are allowed", r.ID(), ErrSettings, c.lots, steps.MostLots)
+		case c.charges > 1 && c.lots > 1:
+			return fmt.Errorf("%s: %w: several charges in sequence are not used again as they are", r.ID(), ErrSettings)
 		}
 	}
 	return nil

@@ -59,6 +59,7 @@ func cloned(s routes.Settings) routes.Settings {
 	s.HandOverMgPerKg, s.SoakHours, s.Stages = slices.Clone(s.HandOverMgPerKg), slices.Clone(s.SoakHours), slices.Clone(s.Stages)
 	s.Stirred, s.Sieve, s.Receiver, s.ReceiverC = slices.Clone(s.Stirred), slices.Clone(s.Sieve), slices.Clone(s.Receiver), slices.Clone(s.ReceiverC)
 	s.CarrierDose, s.PressureKPa = slices.Clone(s.CarrierDose), slices.Clone(s.PressureKPa)
+	s.Charges, s.LotsOverCharge = slices.Clone(s.Charges), slices.Clone(s.LotsOverCharge)
 	return s
 }
 
@@ -87,6 +88,10 @@ func (t *Tuner) axes(r routes.Route, stands []stand) (all []axis) {
 			}
 		case steps.Soak:
 			all = append(all, oneOf(stands, func(s *routes.Settings, v stand) { s.SoakHours[k], s.Stirred[k] = v.hours, v.stirred }))
+		}
+		if stage.Kind == steps.Soak {
+			all = append(all, later(oneOf(t.lotsOverCharge(), func(s *routes.Settings, n int) { setLotsOverCharge(s, k, n) })))
+			all = append(all, later(oneOf(chargesTried, func(s *routes.Settings, n int) { setCharges(s, k, n) })))
 		}
 		if stage.Kind == steps.Soak || stage.Kind == steps.Column {
 			bed := beds

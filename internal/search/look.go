@@ -261,6 +261,7 @@ func (g *tuning) nearest(warm routes.Settings) spot {
 	copy(shape.ReceiverC, warm.ReceiverC)
 	copy(shape.CarrierDose, warm.CarrierDose)
 	copy(shape.PressureKPa, warm.PressureKPa)
+	shape.Charges, shape.LotsOverCharge = slices.Clone(warm.Charges), slices.Clone(warm.LotsOverCharge)
 	for i, a := range g.axes {
 		for v := range a.count {
 			probe := cloned(shape)

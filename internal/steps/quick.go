@@ -99,24 +99,39 @@ func (q *quickSorption) balance(perSorbent, ratio0 float64, a *Aside, shift floa
 	return math.Exp(v), true
 }
 
-// QuickSoak is a soak over weighed beads.
+// QuickSoak is a soak over weighed beads, in one charge or in several equal ones
+// after each other.
 type QuickSoak struct {
 	sorption *quickSorption
-	doseKg   float64
-	rate     float64 // K as planned, 1/s
-	timeS    float64
-	made     float64 // kg/kg, water that the solvent makes
+	doseKg   float64 // of each charge
+	heldKg   float64 // of solvent, by each charge
+	timeS    float64 // of each charge
+	lots     float64 // over the charge, this one the last
+	charges  []quickCharge
 }
 
-// NewQuickSoak prepares a soak of doseKg for timeS, of lots about as large as feed.
-func NewQuickSoak(m *thermo.Mixture, feed Lot, doseKg, timeS float64, sorbent Sorbent, rig SoakRig) (*QuickSoak, error) {
+type quickCharge struct {
+	rate float64 // K as planned, 1/s
+	made float64 // kg/kg, water that the solvent makes
+}
+
+// NewQuickSoak prepares a soak over n equal charges that make up doseKg, each for
+// timeS, of lots about as large as feed.
+func NewQuickSoak(m *thermo.Mixture, feed Lot, doseKg, timeS float64, n int, sorbent Sorbent, rig SoakRig) (*QuickSoak, error) {
 	feed.SolventKg, feed.CarrierKg = feed.SolventKg+feed.CarrierKg, 0
 	b, err := newBath(m, feed, sorbent, rig)
 	if err != nil {
 		return nil, err
 	}
-	dose := doseKg / b.volumeM3
-	return &QuickSoak{newQuickSorption(&b.sorption), doseKg, b.rate(dose), timeS, b.made(dose, timeS)}, nil
+	n = max(1, n)
+	s := &QuickSoak{sorption: newQuickSorption(&b.sorption), doseKg: doseKg / float64(n), timeS: timeS, lots: b.lots()}
+	s.heldKg = s.doseKg * sorbent.HoldUpM3PerKg * m.Solvent.DensityKgPerM3.At(rig.TempK)
+	for range n {
+		dose := s.doseKg / LotVolume(m, feed, rig.TempK)
+		s.charges = append(s.charges, quickCharge{b.rate(dose), b.made(dose, timeS)})
+		feed.SolventKg -= s.heldKg
+	}
+	return s, nil
 }
 
 // Water is what the soak leaves of a lot with solventKg and water (kg/kg).
@@ -124,13 +139,22 @@ func (s *QuickSoak) Water(water, solventKg float64, a *Aside) float64 {
 	if s.doseKg == 0 {
 		return water
 	}
-	ratio, ok := s.sorption.balance(solventKg/s.doseKg, water/(1-water), a, a.Shift.At(s.sorption.tempK))
-	if !ok {
-		return water
+	shift, charged := a.Shift.At(s.sorption.tempK), *a
+	for _, c := range s.charges {
+		perSorbent, ratio0 := solventKg/s.doseKg, water/(1-water)
+		charged.ResidualKgPerKg = a.ResidualKgPerKg + (s.lots-1)*perSorbent*ratio0
+		ratio, ok := s.sorption.balance(perSorbent, ratio0, &charged, shift)
+		if !ok {
+			return water
+		}
+		eq := ratio / (1 + ratio)
+		water = eq + (water-eq)*math.Exp(-c.rate*a.Rate*s.timeS) + c.made
+		solventKg = math.Max(leastSolventKg, solventKg-s.heldKg)
 	}
-	eq := ratio / (1 + ratio)
-	return eq + (water-eq)*math.Exp(-s.rate*a.Rate*s.timeS) + s.made
+	return water
 }
+
+const leastSolventKg = 1e-9 // of a lot that beads have soaked up
 
 // QuickColumn is a column over the bed that was planned.
 type QuickColumn struct {

@@ -2,6 +2,7 @@ package steps
 
 import (
 	"errors"
+	"fmt"
 	"math"
 
 	"parch/internal/thermo"
@@ -21,6 +22,10 @@ type SoakRig struct {
 	Stirred            bool
 	RelativeVelocityMS float64 // of the liquid past a bead that is stirred
 
+	// Lots of the same kind that go over a charge as it is before it is taken out,
+	// this one the last; 0: 1. Between them the beads stay wet and shut.
+	Lots int
+
 	// Water that the solvent makes on the sorbent (ketones condense), kg/kg per
 	// second at 100 kg/m3, as the net rise seen in the liquid; 0: none.
 	CondensationPerS float64
@@ -37,7 +42,7 @@ type bath struct {
 
 func newBath(m *thermo.Mixture, feed Lot, sorbent Sorbent, rig SoakRig) (*bath, error) {
 	b := &bath{sorption: newSorption(m, feed, sorbent, rig.TempK), rig: rig}
-	if err := errors.Join(b.check(), b.checkVessel()); err != nil {
+	if err := errors.Join(b.check(), b.checkVessel(), b.checkLots()); err != nil {
 		return nil, err
 	}
 	b.volumeM3 = LotVolume(m, feed, rig.TempK)
@@ -78,6 +83,24 @@ func (b *bath) checkVessel() error {
 	return checkAmount("a liquid height", "m", b.rig.DepthM, 1e-3, 20)
 }
 
+// MostLots go over a charge before it is taken out, whatever it still holds: beads
+// that are poured over so often turn to dust (assumption).
+const MostLots = 12
+
+func (b *bath) checkLots() error {
+	if b.rig.CondensationPerS > 0 && b.rig.Lots > 1 {
+		return fmt.Errorf("%w: %s makes water on the sorbent: a charge is not used again as it is", ErrNoSense, b.m.Solvent.Key)
+	}
+	return checkAmount("a number of lots over one charge", "", float64(b.rig.Lots), 0, MostLots)
+}
+
+// lots over one charge, this one with them.
+func (b *bath) lots() float64 { return orOne(float64(b.rig.Lots)) }
+
+// beforeKg is the water that the lots before have left on the charge. All that they
+// brought is counted, as much as there can be.
+func (b *bath) beforeKg() float64 { return (b.lots() - 1) * b.feed.WaterKg }
+
 // LotVolume is the volume of a lot in m3, from additive volumes.
 func LotVolume(m *thermo.Mixture, l Lot, tK float64) float64 {
 	return l.SolventKg/m.Solvent.DensityKgPerM3.At(tK) + l.WaterKg/m.Water.DensityKgPerM3.At(tK)
@@ -85,7 +108,9 @@ func LotVolume(m *thermo.Mixture, l Lot, tK float64) float64 {
 
 // equilibrium of doseKg of sorbent with the whole lot:
 //
-//	W0 + m q0 = W + m q(a_w(W))
+//	n W0 + m q0 = W + m q(a_w(W))
+//
+// where the lot is the last of n over the charge.
 func (b *bath) equilibrium(doseKg float64) (float64, error) {
 	return b.equilibriumFrom(doseKg, b.sorbent.ResidualKgPerKg)
 }
@@ -93,7 +118,7 @@ func (b *bath) equilibrium(doseKg float64) (float64, error) {
 func (b *bath) equilibriumFrom(doseKg, residualKgPerKg float64) (float64, error) {
 	feed := b.feed.Water()
 	return b.balanced(math.Log(feed), func(w float64) float64 {
-		return b.feed.SolventKg*(w/(1-w)-feed/(1-feed)) + doseKg*(b.loading(w)-residualKgPerKg)
+		return b.feed.SolventKg*(w/(1-w)-feed/(1-feed)) + doseKg*(b.loading(w)-residualKgPerKg) - b.beforeKg()
 	})
 }
 

@@ -102,7 +102,7 @@ func (b *bath) dose(goal, timeS float64) (SoakDose, error) {
 		return SoakDose{Enough: true}, nil
 	}
 	if spare := b.loading(goal) - b.sorbent.ResidualKgPerKg; spare > 0 {
-		d.Capacity = b.feed.SolventKg * (feed/(1-feed) - goal/(1-goal)) / spare / b.volumeM3
+		d.Capacity = (b.feed.SolventKg*(feed/(1-feed)-goal/(1-goal)) + b.beforeKg()) / spare / b.volumeM3
 	}
 	if k := math.Log(feed/goal) / timeS; k < b.mixPerS {
 		d.Speed = 1 / (b.beadPerS * (1/k - 1/b.mixPerS))
@@ -144,9 +144,9 @@ func (b *bath) spare(goal, timeS float64) func(lnDose float64) float64 {
 		e := math.Exp(-b.rate(dose) * timeS)
 		eq := (goal - feed*e) / (1 - e)
 		if eq <= 0 {
-			return -feed * b.feed.SolventKg
+			return -feed*b.feed.SolventKg - b.beforeKg()
 		}
-		taken := b.feed.SolventKg * (feed/(1-feed) - eq/(1-eq))
+		taken := b.feed.SolventKg*(feed/(1-feed)-eq/(1-eq)) + b.beforeKg()
 		return dose*b.volumeM3*(b.loading(eq)-b.sorbent.ResidualKgPerKg) - taken
 	}
 }

@@ -44,8 +44,8 @@ func (b *bath) ruledBy(o *Outcome, eq, empty, timeS, doseKgPerM3 float64) string
 	made := b.made(doseKgPerM3, timeS)
 	standing := fmt.Sprintf("an equilibrium of %s at this dose", quantity.FormatWater(eq))
 	if q := b.sorbent.ResidualKgPerKg; q > 0 {
-		standing = fmt.Sprintf("residual loading: %.2g g/100 g at the start leave %s at this dose, an empty sorbent %s",
-			100*q, quantity.FormatWater(eq), quantity.FormatWater(empty))
+		standing = fmt.Sprintf("residual loading: %.2g g/100 g at the start%s leave %s at this dose, an empty sorbent %s",
+			100*q, b.withLotsBefore(), quantity.FormatWater(eq), quantity.FormatWater(empty))
 	}
 	switch {
 	case made > away && made > eq:
@@ -56,6 +56,13 @@ func (b *bath) ruledBy(o *Outcome, eq, empty, timeS, doseKgPerM3 float64) string
 		return standing
 	}
 	return fmt.Sprintf("isotherm: %s", standing)
+}
+
+func (b *bath) withLotsBefore() string {
+	if b.rig.Lots > 1 {
+		return fmt.Sprintf(" and the water of %d lots", b.rig.Lots-1)
+	}
+	return ""
 }
 
 // slowest names the larger resistance.

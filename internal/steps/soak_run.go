@@ -50,7 +50,7 @@ func (b *bath) run(goal, timeS float64, dose SoakDose) (Outcome, error) {
 	out := at(timeS)
 
 	vessels := float64(b.rig.Vessels)
-	heldKg := math.Min(doseKg*b.sorbent.HoldUpM3PerKg*b.m.Solvent.DensityKgPerM3.At(b.tempK), b.feed.SolventKg)
+	heldKg := math.Min(doseKg*b.sorbent.HoldUpM3PerKg*b.m.Solvent.DensityKgPerM3.At(b.tempK), b.feed.SolventKg) / b.lots()
 	keptKg := b.feed.SolventKg - heldKg
 	ratio := out / (1 - out)
 	o := Outcome{
@@ -75,16 +75,21 @@ func (b *bath) run(goal, timeS float64, dose SoakDose) (Outcome, error) {
 	}
 	o.Balance.WaterRemovedKg = takenKg + heldKg*ratio
 	o.Why, o.WhyText = b.reason(goal, out, floor, timeS, dose)
+	if b.rig.Lots > 1 {
+		o.WhyText += fmt.Sprintf(", with the last of %d lots over one charge", b.rig.Lots)
+		o.Warnings = append(o.Warnings, fmt.Sprintf("%d lots go over one charge as it is: the outlet is that of the last, the beads stay wet and shut between them and serve this solvent only; regenerate before lot %d", b.rig.Lots, b.rig.Lots+1))
+	}
 	o.Figures = b.figures(dose, eq, takenKg, doseKg)
 	return o, b.remark(&o, eq, timeS, dose.Dose, takenKg)
 }
 
 func (b *bath) figures(dose SoakDose, eq, takenKg, doseKg float64) []Figure {
-	loading := b.sorbent.ResidualKgPerKg
+	before, after := b.sorbent.ResidualKgPerKg, b.sorbent.ResidualKgPerKg
 	if doseKg > 0 {
-		loading += takenKg / doseKg
+		before += b.beforeKg() / doseKg
+		after = before + takenKg/doseKg
 	}
-	return []Figure{
+	figures := []Figure{
 		{"dose", "g/L", dose.Dose},
 		{"dose for capacity", "g/L", dose.Capacity},
 		{"dose for speed", "g/L", dose.Speed},
@@ -93,10 +98,18 @@ func (b *bath) figures(dose SoakDose, eq, takenKg, doseKg float64) []Figure {
 		{"rate constant K", "1/h", b.rate(dose.Dose) * secondsPerHour},
 		{"equilibrium at this dose", "mg/kg", eq * mgPerKg},
 		{"water taken up", "g", takenKg * 1e3},
-		{"loading before", "g/100 g", b.sorbent.ResidualKgPerKg * 100},
-		{"loading after", "g/100 g", loading * 100},
+		{"loading before", "g/100 g", before * 100},
+		{"loading after", "g/100 g", after * 100},
 	}
+	if b.rig.Lots > 1 {
+		figures = append(figures, Figure{LotsServed, "", b.lots()}, Figure{"water taken up by then, at most", "g", (b.beforeKg() + takenKg) * 1e3})
+	}
+	return figures
 }
+
+// LotsServed is the figure that says how many lots go over a charge before it is
+// taken out; a charge for one lot has none.
+const LotsServed = "lots over one charge"
 
 func (b *bath) reason(goal, out, floor, timeS float64, dose SoakDose) (Stop, string) {
 	hours := timeS / secondsPerHour

@@ -20,7 +20,7 @@ func afterwards(k *routes.Case, r *Route) []string {
 	var notes []string
 	add := func(format string, args ...any) { notes = append(notes, fmt.Sprintf(format, args...)) }
 	for place, s := range r.Run.Route {
-		if s.Kind != steps.Soak || r.Run.Outcomes[place].AgentKg == 0 {
+		if o := &r.Run.Outcomes[place]; s.Kind != steps.Soak || o.AgentKg == 0 || o.Figure(steps.LotsServed) > 1 || o.Figure("charges") > 1 {
 			continue
 		}
 		if life, err := k.Life(&r.Run, place); err == nil {

@@ -191,10 +191,10 @@ var sieveColumns = []liveColumn{
 	constant("sieverow", "Row of its setting", "1"), {"again", "Used again", "1", `(INDEX(input_values,{sieverow})="regenerate")*1`}, {"uses", "Uses of a charge", "1", "IF({again}=1,INDEX(input_values,{usesrow}),1)"},
 	{"q0", "Water on the sieve", "kg/kg", "{lot.q0}"}, {"cs", "Capacity at the last use", "1", "(1-{fade})^({uses}-1)"}, {"first", "Wet enough for the sieve", "1", "({w}>{goal})*({w}<=INDEX(load_water,{to}))*({cs}*INDEX(load_held,{from})<={q0})"},
 	{"dry", "No free water", "1", "({w}<=MAX({excess}*{lot.sat},{lot.w}*(1+job_tie*1000)))*1"}, constant("excess", "Free water from, times saturation", "1"),
-	constant("billed", "The bill has an oven", "1"), {"runs", "Oven runs", "1", "IF({again}+{activated}>0,{agent}/{ovenkg},0)"},
+	constant("billed", "The bill has an oven", "1"), constant("lots", "Lots over a charge", "1"), {"runs", "Oven runs", "1", "IF({again}+{activated}>0,{agent}/{lots}/{ovenkg},0)"},
 }
 
-var sieveUses = map[string]string{"used": "{agent}/{uses}", "waste1": "({agent}+{held})/{uses}", "ovenkwh": "{runs}*{runkwh}", "besides": "{runs}*{runh}", "loss1": "{held}" + toLitres}
+var sieveUses = map[string]string{"used": "{agent}/{uses}/{lots}", "waste1": "({agent}/{lots}+{held})/{uses}", "ovenkwh": "{runs}*{runkwh}", "besides": "{runs}*{runh}", "loss1": "{held}" + toLitres}
 
 func with(a, b map[string]string) map[string]string {
 	for k, v := range b {
@@ -208,7 +208,7 @@ func soakBlock() *liveBlock {
 		constant("beads0", "Beads, still", "m3/(kg s)"), constant("beads1", "Beads, stirred", "m3/(kg s)"), constant("mix", "Mixing", "1/s"), constant("mixdepth", "Mixing at a height of", "m"),
 		constant("att", "Attended", "s"), constant("stirw", "Stirrer", "W"), constant("most", "Largest dose", "kg/m3"), constant("hoursrow", "Row of its hours", "1"), constant("stirrow", "Row of its stirring", "1"),
 		{"h", "Stands", "h", "INDEX(input_values,{hoursrow})"}, {"stir", "Stirred", "1", `(INDEX(input_values,{stirrow})="yes")*1`}, {"t", "Stands", "s", "{h}*60*60"},
-		{"vol", "Volume", "m3", "{S}/{lot.ds}+{W}/{lot.dw}"}, {"r0", "Water in", "kg/kg", "{W}/{S}"},
+		{"vol", "Volume", "m3", "{S}/{lot.ds}+{W}/{lot.dw}"}, {"r0", "Water of the lots over a charge", "kg/kg", "{lots}*{W}/{S}"},
 		{"kb", "Beads", "m3/(kg s)", "IF({stir}=1,{beads1},{beads0})"}, {"rm", "Mixing resists", "s", "IF({stir}=1,0,{lot.depth}/{mix}/{mixdepth})"},
 		{"nought", "Before the curve", "1", "{from}-1"}, {"vk", "Volume over solvent and beads", "s", "{vol}/{S}/{kb}"}, {"ktmost", "K t of any dose, at most", "1", "IFERROR(MIN(1000,{t}/{rm}),1000)"},
 	})
@@ -233,7 +233,7 @@ func soakBlock() *liveBlock {
 		{"ea", "Node below", "1", "MAX({from},MIN({hf},{to}-1))"}, {"ua", "Node below", "kg/kg", "INDEX(load_water,{ea})"}, {"ub", "Node above", "kg/kg", "INDEX(load_water,{ea}+1)"},
 		{"fa", "Water at the node below", "kg", "{S}*{ua}/(1-{ua})+{m}*{cs}*INDEX(load_held,{ea})"}, {"fb", "Water at the node above", "kg", "{S}*{ub}/(1-{ub})+{m}*{cs}*INDEX(load_held,{ea}+1)"},
 		{"eq", "Equilibrium", "kg/kg", "{ua}+({ub}-{ua})*({all}-{fa})/({fb}-{fa})"}, {"oncurve", "On the curve", "1", "({fa}<={all}*(1+job_tie))*({all}<={fb}*(1+job_tie))*({t}>0)"}, {"k", "Rate", "1/s", "1/({rm}+1/({kb}*{dose}))"},
-		{"out", "Water out", "kg/kg", "IF({meets}=1,{goal},{eq}+({w}-{eq})*EXP(-{k}*{t}))"}, {"held", "Held by the beads", "kg", "MIN({m}*{hold}*{lot.ds},{S})"},
+		{"out", "Water out", "kg/kg", "IF({meets}=1,{goal},{eq}+({w}-{eq})*EXP(-{k}*{t}))"}, {"held", "Held by the beads", "kg", "MIN({m}*{hold}*{lot.ds},{S})/{lots}"},
 	}...)
 	return newLiveBlock("soak", "Soaks", common(with(map[string]string{
 		"Sout": "{S}-{held}", "Wout": "{Sout}*{out}/(1-{out})", "hours": "{h}+{attended}", "attended": "{lot.vessels}*{att}" + toHours,

@@ -94,11 +94,7 @@ func (l *layout) chargeWords(r *routeModel, o *steps.Outcome, sieve string) stri
 		} else if lot.SieveHistory != "" {
 			s += "; beads: " + strings.ReplaceAll(lot.SieveHistory, "-", " ")
 		}
-		if sieve == routes.Regenerate {
-			s += "; drained beads go to regeneration"
-		} else if sieve != "" {
-			s += "; beads are used once"
-		}
+		s += sieveWords(o, sieve)
 		return s + "."
 	case steps.Salt, steps.Reactive:
 		return fmt.Sprintf("%s of %s on %s.", grams, agent, litres(o.In))
@@ -113,6 +109,25 @@ func (l *layout) chargeWords(r *routeModel, o *steps.Outcome, sieve string) stri
 		return fmt.Sprintf("%s in %s charges.", litres(o.In), significant(charges))
 	}
 	return litres(o.In) + " in one charge."
+}
+
+// sieveWords say in what way a sieve is used and what becomes of it.
+func sieveWords(o *steps.Outcome, sieve string) (s string) {
+	if n := o.Figure("charges"); n > 1 {
+		s = fmt.Sprintf("; in %s equal charges, one after the other", significant(n))
+	}
+	lots := o.Figure(steps.LotsServed)
+	switch {
+	case lots > 1 && sieve == routes.Regenerate:
+		return s + fmt.Sprintf("; the same beads for %s lots, kept wet and shut, then to regeneration", significant(lots))
+	case lots > 1:
+		return s + fmt.Sprintf("; the same beads for %s lots, kept wet and shut, then given up", significant(lots))
+	case sieve == routes.Regenerate:
+		return s + "; drained beads go to regeneration"
+	case sieve != "":
+		return s + "; beads are used once"
+	}
+	return s
 }
 
 func counted(n float64, what string) string {

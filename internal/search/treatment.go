@@ -1,0 +1,38 @@
+package search
+
+import (
+	"slices"
+
+	"parch/internal/routes"
+)
+
+// How a soak's sieve meets the lots: one charge or two in sequence (a third costs
+// work and gains little), and how many lots go over a charge as it is.
+var (
+	chargesTried = []int{1, 2}
+	lotsTried    = []int{1, 2, 3, 4, 6, 8, 12}
+)
+
+// lotsOverCharge are the numbers of lots that may go over one charge: no more than
+// a year brings.
+func (t *Tuner) lotsOverCharge() []int {
+	return slices.DeleteFunc(slices.Clone(lotsTried), func(n int) bool { return n > 1 && float64(n) > t.Case.Lot.BatchesPerYear })
+}
+
+func setCharges(s *routes.Settings, soak, n int) { s.Charges = placed(s.Charges, soak, n) }
+
+func setLotsOverCharge(s *routes.Settings, soak, n int) {
+	s.LotsOverCharge = placed(s.LotsOverCharge, soak, n)
+}
+
+// placed sets the count of one soak. Where all are one nothing is written.
+func placed(counts []int, soak, n int) []int {
+	for len(counts) <= soak {
+		counts = append(counts, 1)
+	}
+	counts[soak] = n
+	if slices.Max(counts) <= 1 {
+		return nil
+	}
+	return counts
+}
