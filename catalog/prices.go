@@ -12,7 +12,7 @@ import (
 var services = map[string]string{
 	"technician": "hour", "electricity": "kwh", "cooling-water": "m3", "karl-fischer": "test",
 	"waste-aqueous": "kg", "waste-flammable-liquid": "kg", "waste-halogenated-liquid": "kg", "waste-reactive": "kg", "waste-wet-solid": "kg",
-	"nitrogen": "litre",
+	"nitrogen": "litre", "flush-nitrogen": "m3",
 }
 
 func (s *shelf) readPrices() {

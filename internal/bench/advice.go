@@ -127,10 +127,6 @@ func (a *Answer) asked() routes.Asked {
 	return routes.Asked{Stage: q.stage(), Stages: q.Stages, Goal: q.Goal, DoseKgPerM3: q.DoseKgPerM3, TimeS: q.TimeS, Stirred: q.Stirred, Powder: q.Powder, Charges: q.Charges, ResidualLow: q.Activation.Low, ResidualHigh: q.Activation.High}
 }
 
-// ignitionMarginK is kept between an oven and the autoignition temperature of
-// what is on the beads (common practice, no source).
-const ignitionMarginK = 50
-
 func (a *Answer) adviseOven() {
 	margin, ok := a.Case.IgnitionMargin()
 	oven := a.Question.Activation.OvenK
@@ -139,7 +135,7 @@ func (a *Answer) adviseOven() {
 		return
 	case !ok && a.Question.Solvent.FlashPoint != nil:
 		a.tell("oven", "no autoignition temperature of %s is known: used beads are flushed free of it with dry gas before an oven at %s", a.Question.Solvent.Name, quantity.FormatTemperature(oven))
-	case ok && margin < ignitionMarginK:
+	case ok && margin < routes.IgnitionMarginK:
 		a.tell("oven", "%s ignites at %s: used beads are flushed free of it with dry gas before an oven at %s, never put in wet", a.Question.Solvent.Name, a.Question.Solvent.Autoignition.Text, quantity.FormatTemperature(oven))
 	}
 }

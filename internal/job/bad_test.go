@@ -108,6 +108,9 @@ func TestBadValues(t *testing.T) {
 		{"lots:", "rates: [{from: EUR, rate: 1, date: 2026-11-01}]\nlots:", `job.yaml:1: rates[0].from: "EUR" is the currency of the job itself`},
 		{"lots:", "rates: [{from: USD, rate: 0, date: 2026-11-01}]\nlots:", `job.yaml:1: rates[0].rate: "0" is not a possible rate; allowed: 0.000001 to 1000000, up to 8 decimals`},
 		// cooling, write-off, storage
+		{"lots:", "site: {sieve flush: water}\nlots:", `job.yaml:1: site.sieve flush: "water" is not allowed here; allowed: nitrogen, vacuum, none`},
+		{"lots:", "site: {lots over a charge: 13}\nlots:", `job.yaml:1: site.lots over a charge: "13" is not possible here; allowed: 1 to 12`},
+		{"lots:", "site: {lots over a charge: some}\nlots:", `job.yaml:1: site.lots over a charge: "some" is not a whole number`},
 		{"lots:", "site: {cooling: river}\nlots:", `job.yaml:1: site.cooling: "river" is not allowed here; allowed: tap, chiller, loop`},
 		{"lots:", "equipment costing: annuity\nlots:", `job.yaml:1: equipment costing: an annuity needs a rate of interest; write for example "interest: 6 %"`},
 		{"lots:", "interest: 60 %\nlots:", `job.yaml:1: interest: "60 %" is not possible here; allowed: 0.1 % to 50 % a year`},

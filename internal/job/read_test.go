@@ -61,7 +61,7 @@ func TestEveryKey(t *testing.T) {
 		},
 		Site: Site{
 			RoomK: 294.15, PressurePa: 101300, Humidity: 0.5, ReceiverK: 288.15, AttendedSecondsPerDay: 25200,
-			PeroxideLimitKgPerM3: 0.005, KarlFischer: "volumetric", Cooling: Tap, WasteContainerKg: 20,
+			PeroxideLimitKgPerM3: 0.005, KarlFischer: "volumetric", Cooling: Tap, SieveFlush: FlushNitrogen, LotsOverACharge: 12, WasteContainerKg: 20,
 		},
 		Equipment: []Equipment{{"still-20l", true}, {"drum-25l", false}},
 		WriteOff:  StraightLine,
@@ -122,6 +122,8 @@ func TestDefaults(t *testing.T) {
 		"site.peroxide limit = 5 mg/L (practice, common practice, 2026-12-01)",
 		"site.karl fischer = coulometric (assumption, assumption, 2026-12-01)",
 		"site.cooling = tap (assumption, assumption, 2026-12-01)",
+		"site.sieve flush = nitrogen (assumption, assumption, 2026-12-01)",
+		"site.lots over a charge = up to 12 (assumption, assumption, 2026-12-01)",
 		"equipment costing = straight line (assumption, assumption, 2026-12-01)",
 		"lots[0].batches = 1 /yr (assumption, assumption, 2026-12-01)",
 		"lots[0].free water = 0 mL (assumption, assumption, 2026-12-01)",

@@ -1,7 +1,9 @@
 package job
 
 import (
+	"fmt"
 	"slices"
+	"strconv"
 
 	"parch/internal/document"
 	"parch/internal/quantity"
@@ -12,7 +14,8 @@ const zeroCelsius = 273.15
 // site reads the place and its rates. What is missing comes from the catalog's practice.
 func (r *reader) site(n *document.Node) {
 	f := n.Map("room", "pressure", "humidity", "receiver", "technician", "electricity", "cooling water",
-		"attended hours per day", "peroxide limit", "karl fischer", "cooling", "waste container", "waste collections", "failed batch")
+		"attended hours per day", "peroxide limit", "karl fischer", "cooling", "waste container", "waste collections", "failed batch",
+		"sieve flush", "lots over a charge")
 	r.job.Site = Site{
 		RoomK: r.orPractice(f.Get("room"), "site.room", "site-room", quantity.Temperature,
 			between(zeroCelsius+5, zeroCelsius+40, "5 °C to 40 °C")),
@@ -32,6 +35,9 @@ func (r *reader) site(n *document.Node) {
 	r.job.Site.Cooling = r.orWord(f.Get("cooling"), "site.cooling", Tap,
 		func(n *document.Node) string { return n.OneOf(Tap, Chiller, Loop) })
 	r.coolant(f.Get("receiver"))
+	r.job.Site.SieveFlush = r.orWord(f.Get("sieve flush"), "site.sieve flush", FlushNitrogen,
+		func(n *document.Node) string { return n.OneOf(FlushNitrogen, FlushVacuum, FlushNone) })
+	r.lotsOverACharge(f.Get("lots over a charge"))
 	r.waste(f)
 	if n := f.Get("failed batch"); n != nil {
 		r.job.Site.FailedBatch = r.failedBatch(n)
@@ -46,6 +52,22 @@ func (r *reader) coolant(receiver *document.Node) {
 	tap, site := r.cat.Practice["coolant-tap"], r.job.Site
 	if receiver != nil && site.Cooling == Tap && site.ReceiverK > 0 && site.ReceiverK < tap.SI-1e-9 {
 		receiver.Fail("%s is colder than the cooling water from the tap (%s); write cooling: chiller, or a receiver that is not", quantity.Quote(receiver.Text()), quantity.FormatTemperature(tap.SI))
+	}
+}
+
+// mostLotsOverACharge go over the same sieve as it is: beads that are poured over so
+// often turn to dust (assumption).
+const mostLotsOverACharge = 12
+
+func (r *reader) lotsOverACharge(n *document.Node) {
+	r.job.Site.LotsOverACharge = mostLotsOverACharge
+	if n == nil {
+		r.assume("site.lots over a charge", fmt.Sprintf("up to %d", mostLotsOverACharge))
+		return
+	}
+	_, err := strconv.Atoi(n.Text())
+	if r.job.Site.LotsOverACharge = n.Int(); err == nil && (r.job.Site.LotsOverACharge < 1 || r.job.Site.LotsOverACharge > mostLotsOverACharge) {
+		n.Fail("%s is not possible here; allowed: 1 to %d", quantity.Quote(n.Text()), mostLotsOverACharge)
 	}
 }
 

@@ -38,6 +38,8 @@ type Site struct {
 	PeroxideLimitKgPerM3                   float64
 	KarlFischer                            string       // coulometric or volumetric
 	Cooling                                string       // Tap, Chiller or Loop
+	SieveFlush                             string       // FlushNitrogen, FlushVacuum or FlushNone, before used sieve sees an oven
+	LotsOverACharge                        int          // most lots that go over the same sieve as it is
 	WasteContainerKg                       float64      // what a waste container takes
 	WasteCollectionsPerYear                float64      // 0 where not given
 	FailedBatch                            *FailedBatch // of every lot that does not say its own
@@ -48,6 +50,13 @@ const (
 	Tap     = "tap"
 	Chiller = "chiller"
 	Loop    = "loop"
+)
+
+// Ways to free used sieve of solvent before it sees an oven.
+const (
+	FlushNitrogen = "nitrogen"
+	FlushVacuum   = "vacuum"
+	FlushNone     = "none"
 )
 
 // Ways to write equipment off.

@@ -109,13 +109,22 @@ func (c *Case) sieveUses(place int, o steps.Outcome, choice choice) []StageUse {
 				Head: steps.Energy, Item: "electricity", Unit: "kwh", Quantity: runs * oven.Energy.SI / 3.6e6,
 				Basis: fmt.Sprintf("activation: sieve is saved up for runs of %.3g kg and %.3g kWh", oven.Load.SI, oven.Energy.SI/3.6e6),
 			}},
-			StageUse{place, steps.Use{
-				Head: steps.Labour, Item: "technician", Unit: "hour", Quantity: runs * c.practice("oven-attended") / 3600,
-				Basis: "loading the oven, bottling hot sieve, shared by its load",
-			}})
+			StageUse{place, c.ovenLabour(runs, choice.after)})
 		uses = append(uses, c.wear(place, oven, 1)...)
+		if choice.after == Regenerate {
+			uses = append(uses, c.flushUses(place, heldKg/lots)...)
+		}
 	}
 	return uses
+}
+
+// ovenLabour is the work of oven runs; used beads are flushed before.
+func (c *Case) ovenLabour(runs float64, after string) steps.Use {
+	u := steps.Use{Head: steps.Labour, Item: "technician", Unit: "hour", Quantity: runs * c.practice("oven-attended") / 3600, Basis: ovenWork}
+	if r := c.Regeneration(); after == Regenerate && r.Flushed {
+		u.Quantity, u.Basis = u.Quantity*(1+r.WorkOfFlush), flushWork
+	}
+	return u
 }
 
 // ovenRuns is the share of oven runs that a charge of sieve needs. A sieve used

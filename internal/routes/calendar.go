@@ -103,8 +103,3 @@ func (c *Case) makesHydrogen(agent string) bool {
 	a := c.Catalog.Agents[agent]
 	return a != nil && a.Reaction != nil && a.Reaction.Hydrogen > 0
 }
-
-// MayRegenerate reports whether the site lets beads that held solvent into an oven.
-func (c *Case) MayRegenerate() bool {
-	return !slices.Contains(c.Job.Exclude.Hazards, job.UsedSieveInOven)
-}

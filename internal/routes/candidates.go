@@ -29,8 +29,13 @@ func (c *Case) Candidates() ([]Route, []Excluded) {
 			excluded = append(excluded, Excluded{ID: id, Reason: reason, Source: source})
 		}
 	}
+	if reason, source := c.RefuseOven(); reason != "" && slices.ContainsFunc(offered, usesSieve) {
+		excluded = append(excluded, Excluded{ID: Regenerate, Reason: reason, Source: source})
+	}
 	return offered, excluded
 }
+
+func usesSieve(r Route) bool { return r.count(steps.Soak, steps.Column) > 0 }
 
 // chains are the orders in which the steps make sense: free water first, bulk
 // water by boiling or a salt, the rest over a sorbent or a reactive agent; or a

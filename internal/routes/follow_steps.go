@@ -129,6 +129,8 @@ func (f *follower) sieveConstants(agent string) Constants {
 		k["oven kg"], k["oven kWh"], k["oven h"], k["oven"] = ovens[0].Load.SI, ovens[0].Energy.SI/3.6e6, f.practice("oven-attended")/3600, 1
 	}
 	k["activated"] = truth(f.Lot.SieveHistoryK != 0)
+	r := f.Regeneration()
+	k["flush gas m3/kg"], k["flush caught"], k["flush work"] = r.GasM3PerKg, r.CondensedShare, r.WorkOfFlush
 	return k
 }
 

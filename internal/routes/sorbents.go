@@ -12,7 +12,7 @@ import (
 )
 
 func (c *Case) runSoak(lot steps.Lot, goal float64, agent string, choice choice) (steps.Outcome, error) {
-	if err := c.fitForBeads(lot, goal); err != nil {
+	if err := c.fitForBeads(lot, goal, choice.after); err != nil {
 		return steps.Outcome{}, err
 	}
 	if choice.charges > 1 && choice.lots > 1 {
@@ -44,8 +44,12 @@ func (c *Case) soakRigOf(choice choice) steps.SoakRig {
 // fitForBeads refuses a sieve on a lot that is at its goal already, and on one in
 // which water stands as a layer of its own: no isotherm goes beyond saturation,
 // and beads that liquid water wets grow hot and crack (common practice, no source).
-// What was read as dissolved is taken for dissolved.
-func (c *Case) fitForBeads(lot steps.Lot, goal float64) error {
+// What was read as dissolved is taken for dissolved. Nor are beads regenerated that
+// must not see the oven.
+func (c *Case) fitForBeads(lot steps.Lot, goal float64, after string) error {
+	if reason, _ := c.RefuseOven(); after == Regenerate && reason != "" {
+		return refusal{errors.New(reason)}
+	}
 	switch {
 	case lot.Water() <= goal:
 		return refusal{fmt.Errorf("%s is at or below the %s asked for: nothing is left for a sieve", quantity.FormatWater(lot.Water()), quantity.FormatWater(goal))}
@@ -122,7 +126,7 @@ func (c *Case) unfit(a *catalog.Agent) string {
 
 // runColumn takes the narrowest column that reaches the goal, or the widest.
 func (c *Case) runColumn(lot steps.Lot, goal float64, agent string, choice choice) (steps.Outcome, error) {
-	if err := c.fitForBeads(lot, goal); err != nil {
+	if err := c.fitForBeads(lot, goal, choice.after); err != nil {
 		return steps.Outcome{}, err
 	}
 	var o steps.Outcome

@@ -14,9 +14,10 @@ var (
 )
 
 // lotsOverCharge are the numbers of lots that may go over one charge: no more than
-// a year brings.
+// a year brings, and no more than the site allows.
 func (t *Tuner) lotsOverCharge() []int {
-	return slices.DeleteFunc(slices.Clone(lotsTried), func(n int) bool { return n > 1 && float64(n) > t.Case.Lot.BatchesPerYear })
+	most := min(float64(t.Case.Job.Site.LotsOverACharge), t.Case.Lot.BatchesPerYear)
+	return slices.DeleteFunc(slices.Clone(lotsTried), func(n int) bool { return n > 1 && float64(n) > most })
 }
 
 func setCharges(s *routes.Settings, soak, n int) { s.Charges = placed(s.Charges, soak, n) }

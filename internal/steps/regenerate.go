@@ -76,6 +76,21 @@ func RunRegenerate(m *thermo.Mixture, used UsedSieve, flush Flush, oven Oven, hi
 	return o, nil
 }
 
+// Admit refuses beads that must not see an oven at ovenK: see ErrIgnition and
+// ErrNoIgnition.
+func (u UsedSieve) Admit(f Flush, oven Oven, ovenK float64) error { return u.admit(f, oven, ovenK) }
+
+// FlushGasM3PerKg is the dry gas, at tK and 101.325 kPa, that carries a kilogram of
+// solvent off when it leaves with a share of the solvent's vapour pressure:
+//
+//	V = n R T/(s psat)
+//
+// less the vapour's own volume; none where the solvent boils at tK.
+func FlushGasM3PerKg(solvent *thermo.Pure, tK, saturation float64) float64 {
+	vapourPa := saturation * solvent.VapourPressurePa.At(tK)
+	return math.Max(0, atmospherePa/vapourPa-1) / solvent.MolarMassKgPerMol * thermo.GasConstant * tK / atmospherePa
+}
+
 // admit refuses beads whose solvent could ignite: within SpareMarginK of its
 // autoignition temperature, or where that is not known, unless they are flushed.
 func (u UsedSieve) admit(f Flush, oven Oven, ovenK float64) error {

@@ -9,10 +9,6 @@ import (
 	"parch/internal/steps"
 )
 
-// ignitionMarginK is kept between an oven and the autoignition temperature of
-// the solvent on the beads (common practice, no source).
-const ignitionMarginK = 50
-
 // afterwards says what becomes of the sieve and of the dry solvent of the best
 // route: when the beads have to be regenerated, and how fast the lot gets wet
 // again.
@@ -46,12 +42,15 @@ func ovenWarning(k *routes.Case, r routes.Run) []string {
 		if after != routes.Regenerate {
 			continue
 		}
+		if k.Solvent.FlashPoint != nil && !k.Regeneration().Flushed {
+			return []string{fmt.Sprintf("the job says sieve flush: none, and drained beads go into an oven at %s with what they hold of %s: solvent-wet sieve never goes into an oven; flush it first", quantity.FormatTemperature(k.OvenK()), k.Solvent.Name)}
+		}
 		margin, ok := k.IgnitionMargin()
 		oven := quantity.FormatTemperature(k.Lot.SieveHistoryK)
 		switch {
 		case !ok && k.Solvent.FlashPoint != nil && k.Lot.SieveHistoryK > 0:
 			return []string{fmt.Sprintf("no autoignition temperature of %s is known: used beads are flushed free of it with dry gas before an oven at %s", k.Solvent.Name, oven)}
-		case ok && margin < ignitionMarginK:
+		case ok && margin < routes.IgnitionMarginK:
 			return []string{fmt.Sprintf("%s ignites at %s: used beads are flushed free of it with dry gas before an oven at %s, never put in wet",
 				k.Solvent.Name, quantity.FormatTemperature(k.Solvent.Autoignition.SI), oven)}
 		}

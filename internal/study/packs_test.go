@@ -10,6 +10,7 @@ import (
 
 const packsJob = `
 date: 2026-12-01
+site: {lots over a charge: 1}
 exclude: {steps: [trap, settle, column, salt, reactive, forerun], agents: [alumina, silica-gel]}
 prices:
   - {item: sieve-3a, pack: 1 kg, price: 90 EUR, date: 2026-10-01}
@@ -103,7 +104,8 @@ func TestBuyingCoversTheYear(t *testing.T) {
 func TestNoPriceIsNotFree(t *testing.T) {
 	yaml := strings.Replace(packsJob, "date: 2026-12-01\n", "date: 2026-12-01\ncurrency: SEK\n", 1)
 	yaml = strings.ReplaceAll(yaml, " EUR,", " SEK,")
-	yaml = strings.Replace(yaml, "prices:\n", "site: {technician: 500 SEK/h, electricity: 1.5 SEK/kWh}\nprices:\n  - {item: karl-fischer, price: 15 SEK/test}\n  - {item: waste-wet-solid, price: 15 SEK/kg}\n"+
+	yaml = strings.Replace(yaml, "site: {", "site: {technician: 500 SEK/h, electricity: 1.5 SEK/kWh, ", 1)
+	yaml = strings.Replace(yaml, "prices:\n", "prices:\n  - {item: karl-fischer, price: 15 SEK/test}\n  - {item: waste-wet-solid, price: 15 SEK/kg}\n"+
 		"  - {item: oven-50l, price: 9000 SEK}\n  - {item: drum-25l, price: 900 SEK}\n", 1)
 	r := compare(t, yaml, study.Options{})
 	routes := r.Lots[0].Routes

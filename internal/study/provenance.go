@@ -75,7 +75,7 @@ func gather(r *Report, c *catalog.Catalog) *shelf {
 func appliesTo(key string, kinds map[steps.Kind]bool) bool {
 	owners := map[string]steps.Kind{
 		"trap-": steps.Trap, "heat-": steps.Trap, "draining-": steps.Trap, "cooling-": steps.Trap, "vapour-": steps.Trap,
-		"forerun-": steps.Forerun, "carrier-": steps.Forerun, "settle-": steps.Settle, "soak-": steps.Soak, "oven-": steps.Soak, "dose-": steps.Soak, "buy-": steps.Buy,
+		"forerun-": steps.Forerun, "carrier-": steps.Forerun, "settle-": steps.Settle, "soak-": steps.Soak, "oven-": steps.Soak, "flush-": steps.Soak, "dose-": steps.Soak, "buy-": steps.Buy,
 	}
 	for prefix, kind := range owners {
 		if strings.HasPrefix(key, prefix) {

@@ -165,10 +165,10 @@ func forerunBlock() *liveBlock {
 		"hours": "({setup}+{hot}+{lot.charges}*{shut})" + toHours, "attended": "({setup}+{hot}*{share}+{lot.charges}*{shut})" + toHours,
 		"energy": "{lot.heater}*{hot}" + toKWh, "cooling": "{run}*{boil}", "loss1": "({S}-{potS})" + toLitres, "loss2": "{potS}*{lost}" + toLitres,
 		"waste1":  "{W}-{potW}+{S}-{potS}",
-		"follows": "{lot.stillok}*{inside}*({left}>={heel}*(1-job_tie))*{worth}",
+		"follows": "{lot.stillok}*{inside}*({left}>={heel}*(1-job_tie))*{worth}*(({w}>{end}*(1+job_tie))*1={works})",
 	}), columnsOf(chain, stillColumns, []liveColumn{
 		constant("from", "Curve from row", "1"), constant("to", "Curve to row", "1"), constant("heel", "Heel", "1"), constant("driest", "Driest outlet", "kg/kg"), constant("setup", "Set-up", "s"),
-		constant("settle", "At total reflux", "s"), constant("shut", "Shut-down", "s"), constant("cold", "Fed cold", "1"),
+		constant("works", "Draws some off in the run", "1"), constant("settle", "At total reflux", "s"), constant("shut", "Shut-down", "s"), constant("cold", "Fed cold", "1"),
 		{"nw", "Water", "mol", "{W}/{lot.mw}"}, {"ns", "Solvent", "mol", "{S}/{lot.ms}"}, {"end", "Run to", "kg/kg", "MIN({w},MAX({goal},{driest}))"},
 		{"i0", "Place of the feed", "1", placeIn("draw_water", "w")}, {"f0", "Share of the feed", "1", shareIn("draw_water", "i0", "w")},
 		{"i1", "Place at the end", "1", placeIn("draw_water", "end")}, {"f1", "Share at the end", "1", shareIn("draw_water", "i1", "end")},
@@ -191,10 +191,11 @@ var sieveColumns = []liveColumn{
 	constant("sieverow", "Row of its setting", "1"), {"again", "Used again", "1", `(INDEX(input_values,{sieverow})="regenerate")*1`}, {"uses", "Uses of a charge", "1", "IF({again}=1,INDEX(input_values,{usesrow}),1)"},
 	{"q0", "Water on the sieve", "kg/kg", "{lot.q0}"}, {"cs", "Capacity at the last use", "1", "(1-{fade})^({uses}-1)"}, {"first", "Wet enough for the sieve", "1", "({w}>{goal})*({w}<=INDEX(load_water,{to}))*({cs}*INDEX(load_held,{from})<={q0})"},
 	{"dry", "No free water", "1", "({w}<=MAX({excess}*{lot.sat},{lot.w}*(1+job_tie*1000)))*1"}, constant("excess", "Free water from, times saturation", "1"),
-	constant("billed", "The bill has an oven", "1"), constant("lots", "Lots over a charge", "1"), {"runs", "Oven runs", "1", "IF({again}+{activated}>0,{agent}/{lots}/{ovenkg},0)"},
+	constant("billed", "The bill has an oven", "1"), constant("gaskg", "Gas that flushes a kg of solvent off", "m3/kg"), constant("condensed", "Share that is caught", "1"), constant("flushwork", "Work of the flush, of that of the oven", "1"), constant("flushbilled", "The bill has a flush", "1"),
+	{"flushed", "Flushed", "1", "{again}*({gaskg}+{condensed}>0)"}, constant("lots", "Lots over a charge", "1"), {"runs", "Oven runs", "1", "IF({again}+{activated}>0,{agent}/{lots}/{ovenkg},0)"},
 }
 
-var sieveUses = map[string]string{"used": "{agent}/{uses}/{lots}", "waste1": "({agent}/{lots}+{held})/{uses}", "ovenkwh": "{runs}*{runkwh}", "besides": "{runs}*{runh}", "loss1": "{held}" + toLitres}
+var sieveUses = map[string]string{"used": "{agent}/{uses}/{lots}", "waste1": "({agent}/{lots}+{held})/{uses}", "ovenkwh": "{runs}*{runkwh}", "besides": "{runs}*{runh}*(1+{again}*{flushwork})", "gas": "{flushed}*{gaskg}*{held}", "waste2": "{flushed}*{condensed}*{held}", "loss1": "{held}" + toLitres}
 
 func with(a, b map[string]string) map[string]string {
 	for k, v := range b {
@@ -238,7 +239,7 @@ func soakBlock() *liveBlock {
 	return newLiveBlock("soak", "Soaks", common(with(map[string]string{
 		"Sout": "{S}-{held}", "Wout": "{Sout}*{out}/(1-{out})", "hours": "{h}+{attended}", "attended": "{lot.vessels}*{att}" + toHours,
 		"energy": "{stir}*{lot.vessels}*{stirw}*{h}/1000", "agent": "{m}", "pieces": "{lot.vessels}",
-		"follows": "{first}*{dry}*(({runs}>0)*1={billed})*{lot.vesselok}*{oncurve}*{solved}",
+		"follows": "{first}*{dry}*(({runs}>0)*1={billed})*({flushed}={flushbilled})*{lot.vesselok}*{oncurve}*{solved}",
 	}, sieveUses)), own)
 }
 
@@ -323,7 +324,7 @@ func columnBlock() *liveBlock {
 	return newLiveBlock("column", "Columns", common(with(map[string]string{
 		"Sout": "{S}-{held}", "Wout": "{Sout}*{out}/(1-{out})", "hours": "({setup}+{pumps})" + toHours, "attended": "({setup}+{share}*{pumps})" + toHours,
 		"energy": "{pumpw}*{pumps}" + toKWh, "agent": "{agentkg}", "pieces": "1",
-		"follows": "{first}*{dry}*(({runs}>0)*1={billed})*({floor}<{w})*({heldin}>{q0})*({hasnarrow}*{meetsn}=0)*({haswide}*(1-{meets})=0)",
+		"follows": "{first}*{dry}*(({runs}>0)*1={billed})*({flushed}={flushbilled})*({floor}<{w})*({heldin}>{q0})*({hasnarrow}*{meetsn}=0)*({haswide}*(1-{meets})=0)",
 	}, sieveUses)), own)
 }
 

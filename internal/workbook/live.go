@@ -36,7 +36,7 @@ var commonColumns = []liveColumn{
 	{key: "cooling", name: "Cooling water", unit: "m3"}, {key: "agent", name: "Agent charged", unit: "kg"},
 	{key: "loss1", name: "Solvent lost, first cause", unit: "L"}, {key: "loss2", name: "Solvent lost, second cause", unit: "L"}, {key: "loss3", name: "Solvent lost, third cause", unit: "L"},
 	{key: "waste1", name: "Waste, first kind", unit: "kg"}, {key: "waste2", name: "Waste, second kind", unit: "kg"},
-	{key: "used", name: "Agent used up", unit: "kg"}, {key: "ovenkwh", name: "Oven", unit: "kWh"}, {key: "besides", name: "Work besides", unit: "h"},
+	{key: "used", name: "Agent used up", unit: "kg"}, {key: "ovenkwh", name: "Oven", unit: "kWh"}, {key: "besides", name: "Work besides", unit: "h"}, {key: "gas", name: "Gas to flush sieve", unit: "m3"},
 	{key: "pieces", name: "Vessels", unit: "1"}, {key: "bought", name: "Bought", unit: "L"}, {key: "open", name: "Solvent open", unit: "kg"},
 	{key: "follows", name: "In range", unit: "1"},
 }

@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"math"
 
+	"parch/internal/routes"
 	"parch/internal/steps"
 )
 
@@ -197,6 +198,9 @@ func keyOfUse(s *stageModel, line lineModel) string {
 		}
 		return "besides"
 	case steps.Energy:
+		if line.Basis == routes.FlushGasBasis {
+			return "gas"
+		}
 		if s.Kind == steps.Soak || s.Kind == steps.Column {
 			if line.Basis != stirrerBasis && line.Basis != "pump power x hours" {
 				return "ovenkwh"
@@ -222,6 +226,9 @@ func keyOfUse(s *stageModel, line lineModel) string {
 			if d.What == line.Basis {
 				return fmt.Sprintf("waste%d", i+1)
 			}
+		}
+		if line.Basis == routes.FlushedSolvent {
+			return "waste2"
 		}
 		if len(s.Discards) == 0 {
 			return "waste1" // beads, or a lot that is given up

@@ -174,6 +174,7 @@ func (r *routeModel) addUnused(batches float64, book costs.Book) error {
 				key = keyOfUse(s, line)
 			}
 			s.ovenBilled = s.ovenBilled || key == "ovenkwh"
+			s.flushBilled = s.flushBilled || key == "gas" || key == "waste2"
 			stirrer = stirrer || key == "energy"
 		}
 		if s.Kind != steps.Soak || stirrer || !priced {

@@ -25,7 +25,7 @@ type stageModel struct {
 
 	setRow, hoursRow, stirRow, sieveRow int // rows of its settings on Inputs
 	row                                 int // on Steps
-	ovenBilled                          bool
+	ovenBilled, flushBilled             bool
 }
 
 // stagesOf prepares the steps of a route, and gives up following those that the
@@ -169,7 +169,10 @@ func (l *layout) constantsOf(s *stageModel) map[string]float64 {
 		}
 		m["sieverow"], m["hoursrow"], m["stirrow"], m["usesrow"] = float64(s.sieveRow), float64(s.hoursRow), float64(s.stirRow), float64(l.usesRow[s.Agent])
 		m["excess"] = routes.LeastExcess
-		m["billed"] = truth(s.ovenBilled)
+		m["billed"], m["flushbilled"] = truth(s.ovenBilled), truth(s.flushBilled)
+	}
+	if s.Kind == steps.Forerun {
+		m["works"] = truth(s.SolventLostL > 0)
 	}
 	switch s.Kind {
 	case steps.Settle:
@@ -193,7 +196,7 @@ func truth(b bool) float64 {
 
 var stillNames = map[string]string{"share": "attended share", "vl": "vapour loss 1/s", "flow": "cooling m3/s", "cool": "cooling J/m3"}
 
-var sieveNames = map[string]string{"hold": "hold-up m3/kg", "fade": "fade", "ovenkg": "oven kg", "runkwh": "oven kWh", "runh": "oven h", "activated": "activated", "lots": "lots"}
+var sieveNames = map[string]string{"hold": "hold-up m3/kg", "fade": "fade", "ovenkg": "oven kg", "runkwh": "oven kWh", "runh": "oven h", "activated": "activated", "lots": "lots", "gaskg": "flush gas m3/kg", "condensed": "flush caught", "flushwork": "flush work"}
 
 // constantNames leads from the keys of the columns to the program's names.
 var constantNames = map[steps.Kind]map[string]string{
