@@ -11,6 +11,7 @@ import (
 
 	"parch/internal/job"
 	"parch/internal/quantity"
+	"parch/internal/routes"
 	"parch/internal/steps"
 	"parch/internal/study"
 )
@@ -187,6 +188,20 @@ func (p *page) ranking(r *study.Report, l *study.Lot) {
 	p.more(hidden)
 	if slices.ContainsFunc(reach, func(r *study.Route) bool { return r.Bill.Priced() && len(r.Bill.Doubts) > 0 }) {
 		p.say(5, 0, "* rests on prices to check, which stand below.")
+	}
+	p.unsuitable(l)
+}
+
+// unsuitable names the routes over an agent that is unsuitable and was accepted.
+func (p *page) unsuitable(l *study.Lot) {
+	var ids []string
+	for i := range l.Routes {
+		if strings.Contains(l.Routes[i].Label, routes.UnsuitableMark) {
+			ids = append(ids, l.Routes[i].ID)
+		}
+	}
+	if len(ids) > 0 {
+		p.say(5, 2, "unsuitable, accepted by the job: %s", strings.Join(ids, ", "))
 	}
 }
 

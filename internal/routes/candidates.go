@@ -188,7 +188,7 @@ func (c *Case) refuseAgent(agent string) (reason, source string) {
 	if !ok {
 		return fmt.Sprintf("no data on %s with %s", agent, c.Solvent.Name), ""
 	}
-	if v.Word == "unsuitable" && c.accepted(agent) {
+	if v.Word == "unsuitable" && slices.Contains(c.Job.Accept.Unsuitable, agent) {
 		return "", ""
 	}
 	if !v.Allowed() {
@@ -245,6 +245,10 @@ func inWhatWay(choice choice) string {
 	return ""
 }
 
+// UnsuitableMark stands in the label of a route behind an agent that is unsuitable for
+// the solvent and was accepted by name.
+const UnsuitableMark = " (unsuitable, accepted by the job)"
+
 // Label is a route in words.
 func (c *Case) Label(r Route, settings Settings) string {
 	parts := make([]string, len(r))
@@ -273,6 +277,9 @@ func (c *Case) Label(r Route, settings Settings) string {
 			parts[i] = "distil off " + c.Catalog.Agents[s.Agent].Name
 		case steps.Buy:
 			parts[i] = "buy dry"
+		}
+		if v, ok := c.Catalog.Verdict(c.Solvent, s.Agent); ok && s.Agent != "" && v.Word == "unsuitable" {
+			parts[i] += UnsuitableMark
 		}
 	}
 	return strings.Join(parts, ", ")

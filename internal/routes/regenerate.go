@@ -32,29 +32,25 @@ func (c *Case) OvenK() float64 {
 	return usualOvenK
 }
 
-// flammable reports whether the solvent burns: it has a flash point.
-func (c *Case) flammable() bool { return c.Solvent.FlashPoint != nil }
+// Burns reports whether the solvent burns: it has a flash point. An own solvent is
+// held to burn.
+func (c *Case) Burns() bool { return c.Solvent.FlashPoint != nil || c.Solvent.Own }
 
 // flushes reports whether used beads are freed of solvent before they see an oven.
 // What does not burn is driven off in it.
-func (c *Case) flushes() bool { return c.flammable() && c.Job.Site.SieveFlush != job.FlushNone }
+func (c *Case) flushes() bool { return c.Burns() && c.Job.Site.SieveFlush != job.FlushNone }
 
 // Regeneration is how used beads are brought back.
 type Regeneration struct {
-	Flushed         bool
-	GasM3PerKg      float64 // of dry gas, by solvent on the beads
-	CondensedShare  float64 // of that solvent, which becomes waste
-	WorkOfFlush     float64 // share that comes to the work of the oven run
-	OvenK, MarginK  float64 // below the autoignition temperature; 0 where it is not known
-	IgnitionIsKnown bool
+	Flushed        bool
+	GasM3PerKg     float64 // of dry gas, by solvent on the beads
+	CondensedShare float64 // of that solvent, which becomes waste
+	WorkOfFlush    float64 // share that comes to the work of the oven run
 }
 
 // Regeneration of the sieve of the lot.
 func (c *Case) Regeneration() Regeneration {
-	r := Regeneration{Flushed: c.flushes(), OvenK: c.OvenK()}
-	if c.Solvent.Autoignition != nil {
-		r.IgnitionIsKnown, r.MarginK = true, c.Solvent.Autoignition.SI-r.OvenK
-	}
+	r := Regeneration{Flushed: c.flushes()}
 	if !r.Flushed {
 		return r
 	}
@@ -71,7 +67,7 @@ func (c *Case) RefuseOven() (reason, source string) {
 	if slices.Contains(c.Job.Exclude.Hazards, job.UsedSieveInOven) {
 		return "the job excludes used sieve in an oven: each charge is used once, or for several lots as it is", "job"
 	}
-	used := steps.UsedSieve{Kg: 1, SolventKg: 1, Flammable: c.flammable()}
+	used := steps.UsedSieve{Kg: 1, SolventKg: 1, Flammable: c.Burns()}
 	if c.Solvent.Autoignition != nil {
 		used.IgnitionK, source = c.Solvent.Autoignition.SI, c.Solvent.Autoignition.Source
 	}

@@ -22,7 +22,7 @@ const (
 // Assured tightens a tuned run until its chance reaches the assurance. A run is
 // tuned so that with everything at its typical value it just ends at the limit, so
 // half of the draws may miss it. Its last step is therefore sized for an aim of its
-// own under the limit, and a last soak may take another stand: of all stands that
+// own under the limit, and a last soak may take another stand and serve fewer lots: of all that
 // can be assured the best by the objective, the hand-overs before it kept. Where
 // nothing helps the run comes back as it was.
 func (t *Tuner) Assured(r routes.Route, run routes.Run, a Assurance) (routes.Run, error) {
@@ -67,22 +67,25 @@ func (t *Tuner) otherStands(r routes.Route, run routes.Run) ([]trial, error) {
 		return nil, err
 	}
 	var all []trial
+	last := len(run.Settings.SoakHours) - 1
 	for _, stand := range stands {
-		s := cloned(run.Settings)
-		last := len(s.SoakHours) - 1
-		s.SoakHours[last], s.Stirred[last] = stand.hours, stand.stirred
-		other, err := t.Run(r, s)
-		if err == nil {
-			err = t.inTime(&other)
+		for _, lots := range t.fewerLots(run.Settings, last) {
+			s := cloned(run.Settings)
+			s.SoakHours[last], s.Stirred[last] = stand.hours, stand.stirred
+			setLotsOverCharge(&s, last, lots)
+			other, err := t.Run(r, s)
+			if err == nil {
+				err = t.inTime(&other)
+			}
+			if err != nil || !other.Meets {
+				continue
+			}
+			score, err := t.score(&other)
+			if err != nil {
+				return nil, err
+			}
+			all = append(all, trial{run: other, score: score})
 		}
-		if err != nil || !other.Meets {
-			continue
-		}
-		score, err := t.score(&other)
-		if err != nil {
-			return nil, err
-		}
-		all = append(all, trial{run: other, score: score})
 	}
 	slices.SortStableFunc(all, func(a, b trial) int {
 		switch {

@@ -20,6 +20,24 @@ func (t *Tuner) lotsOverCharge() []int {
 	return slices.DeleteFunc(slices.Clone(lotsTried), func(n int) bool { return n > 1 && float64(n) > most })
 }
 
+// fewerLots are the numbers of lots over the charge of a soak: as many as it has, half
+// way down, and one, as a charge that serves fewer is surer.
+func (t *Tuner) fewerLots(s routes.Settings, soak int) (all []int) {
+	most := 1
+	if soak < len(s.LotsOverCharge) {
+		most = s.LotsOverCharge[soak]
+	}
+	for _, n := range t.lotsOverCharge() {
+		if n <= most {
+			all = append(all, n)
+		}
+	}
+	if len(all) > 2 {
+		all = []int{all[0], all[len(all)/2], all[len(all)-1]}
+	}
+	return all
+}
+
 func setCharges(s *routes.Settings, soak, n int) { s.Charges = placed(s.Charges, soak, n) }
 
 func setLotsOverCharge(s *routes.Settings, soak, n int) {

@@ -42,7 +42,7 @@ func ovenWarning(k *routes.Case, r routes.Run) []string {
 		if after != routes.Regenerate {
 			continue
 		}
-		if k.Solvent.FlashPoint != nil && !k.Regeneration().Flushed {
+		if k.Burns() && !k.Regeneration().Flushed {
 			return []string{fmt.Sprintf("the job says sieve flush: none, and drained beads go into an oven at %s with what they hold of %s: solvent-wet sieve never goes into an oven; flush it first", quantity.FormatTemperature(k.OvenK()), k.Solvent.Name)}
 		}
 		margin, ok := k.IgnitionMargin()

@@ -106,7 +106,7 @@ func TestNoPriceIsNotFree(t *testing.T) {
 	yaml = strings.ReplaceAll(yaml, " EUR,", " SEK,")
 	yaml = strings.Replace(yaml, "site: {", "site: {technician: 500 SEK/h, electricity: 1.5 SEK/kWh, ", 1)
 	yaml = strings.Replace(yaml, "prices:\n", "prices:\n  - {item: karl-fischer, price: 15 SEK/test}\n  - {item: waste-wet-solid, price: 15 SEK/kg}\n"+
-		"  - {item: oven-50l, price: 9000 SEK}\n  - {item: drum-25l, price: 900 SEK}\n", 1)
+		"  - {item: oven-50l, price: 9000 SEK}\n  - {item: drum-25l, price: 900 SEK}\n  - {item: flush-nitrogen, price: 45 SEK/m3}\n  - {item: waste-flammable-liquid, price: 20 SEK/kg}\n", 1)
 	r := compare(t, yaml, study.Options{})
 	routes := r.Lots[0].Routes
 	if routes[0].ID != "soak:sieve-3a" || !routes[0].Bill.Priced() || routes[0].Rank != 1 {
