@@ -77,7 +77,7 @@ func (b *bath) run(goal, timeS float64, dose SoakDose) (Outcome, error) {
 	o.Why, o.WhyText = b.reason(goal, out, floor, timeS, dose)
 	if b.rig.Lots > 1 {
 		o.WhyText += fmt.Sprintf(", with the last of %d lots over one charge", b.rig.Lots)
-		o.Warnings = append(o.Warnings, fmt.Sprintf("%d lots go over one charge as it is: the outlet is that of the last, the beads stay wet and shut between them and serve this solvent only; regenerate before lot %d", b.rig.Lots, b.rig.Lots+1))
+		o.Warnings = append(o.Warnings, fmt.Sprintf("%d lots go over one charge as it is: the outlet is that of the last, the beads stay wet and shut between them and serve this solvent only; regenerate or replace them before lot %d", b.rig.Lots, b.rig.Lots+1))
 	}
 	o.Figures = b.figures(dose, eq, takenKg, doseKg)
 	return o, b.remark(&o, eq, timeS, dose.Dose, takenKg)
