@@ -184,8 +184,8 @@ func (c *Case) WasteItem(class steps.WasteClass) string {
 	return "waste-flammable-liquid"
 }
 
-// wholeRoute is what is paid once a batch: showing the result, and the feed.
-func (c *Case) wholeRoute(run *Run) []StageUse {
+// WholeRoute is what is paid once a batch: showing the result, and the feed.
+func (c *Case) WholeRoute(run *Run) []StageUse {
 	tests := c.tests(run.Route)
 	injections := float64(c.Assay.Injections)
 	hours := c.practice("karl-fischer-time") / 3600

@@ -127,7 +127,7 @@ func (c *Case) finish(run *Run, product steps.Lot) {
 	run.TooDry = run.WaterOut < c.AcceptFrom()*(1-1e-9)
 	run.Meets = run.WaterOut <= c.Limit.AcceptAt*(1+1e-9) && !run.TooDry
 	run.LitresDelivered = steps.LotVolume(c.Mixture, product, c.Job.Site.RoomK) * 1e3
-	run.add(c.wholeRoute(run)...)
+	run.add(c.WholeRoute(run)...)
 	for _, o := range run.Outcomes {
 		run.HoursTotal += o.HoursTotal
 		run.CoolingWaterL += o.CoolingWaterL

@@ -30,6 +30,23 @@ func (t *Tuner) Prune(all []routes.Route) (kept []routes.Route, dropped []routes
 	return kept, dropped
 }
 
+// Unbeaten leaves out the steps that Prune drops as a first step.
+func (t *Tuner) Unbeaten(all []routes.Stage) (kept []routes.Stage) {
+	var chains []routes.Route
+	for _, s := range all {
+		if s.Kind == steps.Salt {
+			chains = append(chains, routes.Route{s, {Kind: steps.Buy}})
+		}
+	}
+	worse := t.dominatedSalts(chains)
+	for _, s := range all {
+		if worse[s.Agent] == "" {
+			kept = append(kept, s)
+		}
+	}
+	return kept
+}
+
 // pretreatment is the salt that another step follows, or "".
 func pretreatment(r routes.Route) string {
 	for _, s := range r[:len(r)-1] {

@@ -4,9 +4,11 @@ import (
 	"context"
 	"errors"
 	"fmt"
+	"maps"
 	"math"
 	"slices"
 	"sort"
+	"sync"
 
 	"parch/catalog"
 	"parch/internal/costs"
@@ -72,6 +74,48 @@ type work struct {
 	k     *routes.Case
 	site  *costs.Arrangement
 	drawn *doubts // nil: no draws are made
+
+	lock sync.Mutex
+	done map[string]tuned // by objective and route
+}
+
+// tuned is a run and the prices that it was tuned at.
+type tuned struct {
+	book costs.Book
+	run  routes.Run
+	err  error
+}
+
+// tune gives the best run of a route that is sure enough, or the one that was found
+// at prices that differ in agents of other routes only.
+func (w *work) tune(t *search.Tuner, r routes.Route) (routes.Run, error) {
+	key := string(t.Objective) + " " + r.ID()
+	w.lock.Lock()
+	before, ok := w.done[key]
+	w.lock.Unlock()
+	if ok && t.Mix == nil && !w.concerned(r, before.book, t.Book) {
+		return before.run, before.err
+	}
+	run, err := t.Tune(r)
+	if err == nil {
+		run, err = w.drawn.sure(t, r, run)
+	}
+	w.lock.Lock()
+	defer w.lock.Unlock()
+	w.done[key] = tuned{t.Book, run, err}
+	return run, err
+}
+
+// concerned reports whether prices differ that may belong to a route.
+func (w *work) concerned(r routes.Route, one, other costs.Book) bool {
+	for item := range other {
+		_, agent := w.k.Catalog.Agents[item]
+		foreign := agent && !slices.ContainsFunc(r, func(s routes.Stage) bool { return s.Agent == item })
+		if !foreign && !one[item].PerUnit.Equal(other[item].PerUnit) {
+			return true
+		}
+	}
+	return false
 }
 
 func newWork(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog, book costs.Book, o Options) (*work, error) {
@@ -79,7 +123,7 @@ func newWork(ctx context.Context, j *job.Job, lot job.Lot, c *catalog.Catalog, b
 	if err != nil || k.Dry() {
 		return &work{k: k}, err
 	}
-	w := &work{k: k, site: costs.NewArrangement(c, j)}
+	w := &work{k: k, site: costs.NewArrangement(c, j), done: map[string]tuned{}}
 	w.drawn, err = newDoubts(ctx, k, book, w.site, o)
 	return w, err
 }
@@ -99,17 +143,17 @@ func (w *work) compare(ctx context.Context, book costs.Book, o Options) (Lot, er
 	}
 	w.drawn.price(book)
 	tuner := &search.Tuner{Case: k, Book: book, Objective: search.Objective(k.Job.Objective), Site: w.site, Stop: ctx.Err}
-	offered, err := l.offer(tuner, given)
+	marks, err := l.find(ctx, w, tuner, given)
+	if err == nil {
+		err = l.dropBeaten(tuner, marks)
+	}
+	if err == nil {
+		err = w.drawn.judge(ctx, l.Routes, k.Lot.FailedBatch)
+	}
+	if err == nil {
+		l.Routes, err = ranked(l.Routes, tuner)
+	}
 	if err != nil {
-		return Lot{}, err
-	}
-	if err := l.carryOut(ctx, w, tuner, offered, given); err != nil {
-		return Lot{}, err
-	}
-	if err := w.drawn.judge(ctx, l.Routes, k.Lot.FailedBatch); err != nil {
-		return Lot{}, err
-	}
-	if l.Routes, err = ranked(l.Routes, tuner); err != nil {
 		return Lot{}, err
 	}
 	l.unsure(w.drawn)
@@ -130,20 +174,18 @@ func (w *work) compare(ctx context.Context, book costs.Book, o Options) (Lot, er
 	return l, nil
 }
 
-// offer lists the routes to be run: those of an earlier run, or all that are not
-// refused or beaten.
-func (l *Lot) offer(t *search.Tuner, given map[string]routes.Settings) ([]routes.Route, error) {
-	offered, excluded := t.Case.Candidates()
+// find runs the routes of an earlier run, or searches for all that are not refused
+// or beaten.
+func (l *Lot) find(ctx context.Context, w *work, t *search.Tuner, given map[string]routes.Settings) (*search.Marks, error) {
+	if given == nil {
+		return l.search(ctx, w, t)
+	}
+	usual, excluded := t.Case.Candidates()
 	l.Excluded = excluded
-	if err := weigh(t, t.Case.Job, offered); err != nil {
+	if err := weigh(t, t.Case.Job, usual); err != nil {
 		return nil, err
 	}
-	if given != nil {
-		return withSettings(offered, given), nil
-	}
-	offered, dropped := t.Prune(offered)
-	l.Excluded = append(l.Excluded, dropped...)
-	return offered, nil
+	return nil, l.carryOut(ctx, w, t, t.Case.Chains(usual, slices.Sorted(maps.Keys(given))), given)
 }
 
 // carryOut runs the routes, several at a time, and enters what comes of them in the
@@ -152,7 +194,7 @@ func (l *Lot) carryOut(ctx context.Context, w *work, t *search.Tuner, offered []
 	all, refused := make([]Route, len(offered)), make([]string, len(offered))
 	err := atOnce(ctx, len(offered), func(i int) error {
 		r := offered[i]
-		run, err := carryOut(t, r, given, w.drawn)
+		run, err := w.carryOut(t, r, given)
 		var isRefusal bool
 		if refused[i], isRefusal = refusal(err); isRefusal {
 			return nil
@@ -179,11 +221,6 @@ func (l *Lot) carryOut(ctx context.Context, w *work, t *search.Tuner, offered []
 	return nil
 }
 
-// withSettings keeps the routes of an earlier run: what is repeated is that run.
-func withSettings(offered []routes.Route, given map[string]routes.Settings) []routes.Route {
-	return slices.DeleteFunc(offered, func(r routes.Route) bool { _, ok := given[r.ID()]; return !ok })
-}
-
 func belowDetection(k *routes.Case) string {
 	if k.Lot.Water >= k.Assay.DetectionLimit {
 		return ""
@@ -193,14 +230,10 @@ func belowDetection(k *routes.Case) string {
 
 // carryOut runs a route with the settings given for it, or tunes it until it is sure
 // enough.
-func carryOut(t *search.Tuner, r routes.Route, given map[string]routes.Settings, drawn *doubts) (routes.Run, error) {
+func (w *work) carryOut(t *search.Tuner, r routes.Route, given map[string]routes.Settings) (routes.Run, error) {
 	s, ok := given[r.ID()]
 	if !ok {
-		run, err := t.Tune(r)
-		if err != nil {
-			return run, err
-		}
-		return drawn.sure(t, r, run)
+		return w.tune(t, r)
 	}
 	if err := s.Fit(r); err != nil {
 		return routes.Run{}, err

@@ -45,6 +45,7 @@ type question struct {
 	book    costs.Book
 	site    *costs.Arrangement
 	offered []routes.Route
+	longer  []routes.Route // those that were found beside the usual ones
 	warm    map[string]routes.Settings
 	now     map[string]float64 // cost a litre of each route as things are; +Inf where it cannot be had
 	stop    func() error
@@ -65,8 +66,14 @@ func newQuestion(ctx context.Context, r *Report, l *Lot, c *catalog.Catalog) (*q
 		}
 	}
 	for i := range l.Routes {
-		q.warm[l.Routes[i].ID] = l.Routes[i].Run.Settings
+		r := &l.Routes[i]
+		q.warm[r.ID] = r.Run.Settings
+		leads := i == 0 || r == l.Best() // others take more time here than they tell
+		if leads && !slices.ContainsFunc(offered, func(o routes.Route) bool { return o.ID() == r.ID }) {
+			q.longer = append(q.longer, r.Run.Route)
+		}
 	}
+	q.offered = append(q.offered, q.longer...)
 	_, q.now, err = q.field(q.tuner(k, q.book), nil).Cheapest(nil, math.Inf(1))
 	return q, err
 }

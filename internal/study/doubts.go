@@ -63,9 +63,12 @@ func (d *doubts) price(book costs.Book) {
 	}
 }
 
+// applies reports whether there are draws and a limit that can be shown.
+func (d *doubts) applies() bool { return d != nil && !math.IsNaN(d.limits.Most) }
+
 // sure tightens a run until it is sure enough, where that can be.
 func (d *doubts) sure(t *search.Tuner, r routes.Route, run routes.Run) (routes.Run, error) {
-	if d == nil || !run.Meets || math.IsNaN(d.limits.Most) {
+	if !run.Meets || !d.applies() {
 		return run, nil
 	}
 	return t.Assured(r, run, search.Assurance{Sure: d.sureEnough})

@@ -1,0 +1,306 @@
+package search
+
+import (
+	"cmp"
+	"errors"
+	"math"
+	"slices"
+
+	"parch/internal/routes"
+	"parch/internal/steps"
+)
+
+// Bounds are what chains on a lot come to at least.
+type Bounds struct {
+	tuner    *Tuner
+	litres   float64
+	whole    toll // of a route as a whole: the test of its product
+	perLitre float64
+	anywhere map[routes.Stage]toll // what a step takes wherever it stands
+}
+
+// toll is what steps take of a batch at least. Equipment, which several steps may
+// share, is left out.
+type toll struct{ money, attended, wasteKg, energyKWh, hours float64 }
+
+func (a toll) plus(b toll) toll {
+	return toll{a.money + b.money, a.attended + b.attended, a.wasteKg + b.wasteKg, a.energyKWh + b.energyKWh, a.hours + b.hours}
+}
+
+func (a toll) times(f float64) toll {
+	return toll{a.money * f, a.attended * f, a.wasteKg * f, a.energyKWh * f, a.hours * f}
+}
+
+func (a toll) least(b toll) toll {
+	return toll{math.Min(a.money, b.money), math.Min(a.attended, b.attended), math.Min(a.wasteKg, b.wasteKg), math.Min(a.energyKWh, b.energyKWh), math.Min(a.hours, b.hours)}
+}
+
+// Branch is a chain that further steps may follow.
+type Branch struct {
+	Route routes.Route
+	Ends  bool // its last step reaches the goal, if those before it leave as little water as they can
+
+	tolls []toll       // one for each way to treat its sorbents
+	lot   *routes.Case // what it leaves at best
+}
+
+// NewBounds works out what each step takes at least.
+func (t *Tuner) NewBounds(all []routes.Stage) *Bounds {
+	b := &Bounds{tuner: t, litres: steps.LotVolume(t.Case.Mixture, t.Case.Feed, t.Case.Job.Site.RoomK) * 1e3, anywhere: map[routes.Stage]toll{}}
+	b.ofWhole()
+	dry := t.Case.Lot
+	dry.FreeWaterM3, dry.Water, dry.Saturated = 0, math.Min(dry.Water, worthASieve*t.Case.Goal()), false
+	dried := t.Case.With(dry)
+	for _, s := range all {
+		first := true
+		for _, k := range []*routes.Case{t.Case, dried} {
+			tolls, _, _, err := b.step(k, s)
+			if err != nil {
+				continue
+			}
+			for _, x := range tolls {
+				if first {
+					b.anywhere[s] = x
+				}
+				b.anywhere[s], first = b.anywhere[s].least(x), false
+			}
+		}
+	}
+	return b
+}
+
+// ofWhole is what is paid once a batch, whatever the route.
+func (b *Bounds) ofWhole() {
+	k := b.tuner.Case
+	idle := routes.Run{Route: routes.Route{{Kind: steps.Settle}}, LitresDelivered: 1}
+	for _, u := range k.WholeRoute(&idle) {
+		money := b.money([]routes.StageUse{u})
+		if u.Head == steps.Purchase {
+			b.perLitre += money
+			continue
+		}
+		b.whole.money += money
+		if u.Item == "technician" {
+			b.whole.attended += u.Quantity
+		}
+	}
+}
+
+func (b *Bounds) money(uses []routes.StageUse) float64 {
+	cost, err := b.tuner.Book.PerBatchFloat(uses, b.tuner.Case.Lot.BatchesPerYear)
+	if err != nil {
+		return 0
+	}
+	return cost
+}
+
+// Root is the chain without a step.
+func (b *Bounds) Root() Branch {
+	return Branch{tolls: []toll{b.whole}, lot: b.tuner.Case}
+}
+
+// Leave drops what was remembered to carry a branch on.
+func (f Branch) Leave() {
+	if len(f.Route) > 0 {
+		f.lot.Forget()
+	}
+}
+
+// CheapestFirst orders branches by what they cost at least, then by their ids.
+func (b *Bounds) CheapestFirst(all []Branch) {
+	least := func(f Branch) float64 {
+		money := math.Inf(1)
+		for _, x := range f.tolls {
+			money = math.Min(money, x.money)
+		}
+		return money
+	}
+	slices.SortFunc(all, func(x, y Branch) int {
+		return cmp.Or(cmp.Compare(least(x), least(y)), cmp.Compare(x.Route.ID(), y.Route.ID()))
+	})
+}
+
+// Rough bounds the chains that go on from a branch with a step, without a run.
+func (b *Bounds) Rough(from Branch, s routes.Stage) []Measures {
+	return b.measures(from.joined([]toll{b.ahead(from, s)}))
+}
+
+// ahead is what a step takes at least after a branch. What follows a trap finds the
+// still set up and hot.
+func (b *Bounds) ahead(from Branch, s routes.Stage) toll {
+	if n := len(from.Route); s.Kind == steps.Forerun && n > 0 && from.Route[n-1].Kind == steps.Trap {
+		return toll{}
+	}
+	return b.anywhere[s]
+}
+
+// Of a branch as it stands.
+func (b *Bounds) Of(branch Branch) []Measures { return b.measures(branch.tolls) }
+
+func (b *Bounds) measures(tolls []toll) (all []Measures) {
+	for _, x := range tolls {
+		all = append(all, Measures{x.money/b.litres + b.perLitre, x.attended, x.wasteKg, x.energyKWh, x.hours})
+	}
+	return all
+}
+
+func (f Branch) joined(tolls []toll) (all []toll) {
+	for _, x := range f.tolls {
+		for _, y := range tolls {
+			all = append(all, x.plus(y))
+		}
+	}
+	return all
+}
+
+// Extend carries a branch on with a step. The error says why the step refuses even
+// what the branch leaves at best.
+func (b *Bounds) Extend(from Branch, s routes.Stage) (Branch, error) {
+	tolls, out, ends, err := b.step(from.lot, s)
+	if err != nil {
+		return Branch{}, err
+	}
+	if after := b.ahead(from, s); after == (toll{}) {
+		tolls = []toll{after}
+	}
+	next := Branch{Route: append(from.Route[:len(from.Route):len(from.Route)], s), Ends: ends, tolls: from.joined(tolls)}
+	lot := from.lot.Lot
+	lot.FreeWaterM3, lot.Saturated, lot.Water = 0, false, out.Water()
+	lot.BatchM3 = steps.LotVolume(from.lot.Mixture, out, from.lot.Job.Site.RoomK)
+	next.lot = from.lot.With(lot)
+	return next, nil
+}
+
+// step is what a step takes of a lot at least, what it leaves at best, and whether
+// that reaches the goal.
+func (b *Bounds) step(k *routes.Case, s routes.Stage) (tolls []toll, out steps.Lot, ends bool, err error) {
+	switch s.Kind {
+	case steps.Soak, steps.Column:
+		return b.bed(k, s)
+	case steps.Trap, steps.Forerun:
+		return b.boiled(k, s)
+	}
+	last, err := k.Run(routes.Route{s}, blank(routes.Route{s}))
+	if err != nil {
+		return nil, out, false, err
+	}
+	least, before := b.toll(&last), last
+	if s.Kind == steps.Salt { // before another step it is given the usual dose
+		alone := routes.Route{s, {Kind: steps.Buy}}
+		if before, err = k.Run(alone, blank(alone)); err != nil {
+			return nil, out, false, err
+		}
+		least = least.least(b.toll(&before))
+	}
+	return []toll{least}, before.Outcomes[0].Out, last.Outcomes[0].Out.Water() <= b.goal(), nil
+}
+
+func (b *Bounds) goal() float64 { return b.tuner.Case.Goal() * (1 + 1e-9) }
+
+// toll of the first step of a run.
+func (b *Bounds) toll(run *routes.Run) toll {
+	var x toll
+	var uses []routes.StageUse
+	for _, u := range ofStage(run.Uses, 1) {
+		if u.Head == steps.Equipment {
+			continue
+		}
+		uses = append(uses, u)
+		switch {
+		case u.Item == "technician":
+			x.attended += u.Quantity
+		case u.Item == "electricity":
+			x.energyKWh += u.Quantity
+		case u.Head == steps.Waste:
+			x.wasteKg += u.Quantity
+		}
+	}
+	x.money, x.hours = b.money(uses), run.Outcomes[0].HoursTotal
+	return x
+}
+
+// boilShare is left of what a boiling step takes by itself where another shares its
+// still, or the lot boils a little earlier.
+const boilShare = 0.7
+
+// boiled is a trap or a forerun: the least that it does takes least, the most leaves
+// least.
+func (b *Bounds) boiled(k *routes.Case, s routes.Stage) (tolls []toll, out steps.Lot, ends bool, err error) {
+	alone := routes.Route{s}
+	short, err := k.RunTo(alone, blank(alone), k.Feed.Water()*leastEffort)
+	if err != nil {
+		return nil, out, false, err
+	}
+	under := *b.tuner
+	under.Case = k
+	far, err := under.driest(alone)
+	if err != nil {
+		return nil, out, false, err
+	}
+	out, ends = b.handedOver(short.Outcomes[0].Out, far.WaterOut)
+	return []toll{b.toll(&short).times(boilShare)}, out, ends, nil
+}
+
+// handedOver is a lot at best before another step: no drier than makes sense there.
+func (b *Bounds) handedOver(kept steps.Lot, water float64) (out steps.Lot, ends bool) {
+	w := math.Min(kept.Water(), math.Max(worthASieve*b.tuner.Case.Goal(), water))
+	out = kept
+	out.WaterKg = out.SolventKg * w / (1 - w)
+	return out, water <= b.goal()
+}
+
+// bed is a soak or a column: the longest stand, still or stirred, needs the least
+// sorbent, the shortest takes the least time.
+func (b *Bounds) bed(k *routes.Case, s routes.Stage) (tolls []toll, out steps.Lot, ends bool, err error) {
+	alone := routes.Route{s}
+	driest, last := math.Inf(1), errors.New("")
+	for _, after := range b.tuner.afterUse() {
+		least, found := toll{}, false
+		for _, v := range b.stands(s.Kind) {
+			set := blank(alone)
+			set.Sieve[0] = after
+			if s.Kind == steps.Soak {
+				set.SoakHours[0], set.Stirred[0] = v.hours, v.stirred
+			}
+			run, err := k.Run(alone, set)
+			if err != nil {
+				last = err
+				continue
+			}
+			x := b.toll(&run)
+			if found {
+				x = x.least(least)
+			}
+			least, found = x, true
+			if s.Kind == steps.Soak {
+				least.hours = math.Min(least.hours, stirredHours[0])
+			}
+			if o := run.Outcomes[0]; o.Out.Water() < driest {
+				driest = o.Out.Water()
+				out, ends = b.handedOver(o.Out, driest)
+			}
+		}
+		if found {
+			tolls = append(tolls, least)
+		}
+	}
+	if tolls == nil {
+		return nil, out, false, last
+	}
+	return tolls, out, ends, nil
+}
+
+// stands that need the least sorbent.
+func (b *Bounds) stands(kind steps.Kind) []stand {
+	if kind == steps.Column {
+		return []stand{{}}
+	}
+	longest := func(hours []float64) float64 {
+		most := hours[len(hours)-1]
+		if limit := b.tuner.Case.Lot.NeededWithinS / 3600; limit > 0 {
+			most = math.Min(most, limit)
+		}
+		return most
+	}
+	return []stand{{longest(soakHours), false}, {longest(stirredHours), true}}
+}

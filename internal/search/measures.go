@@ -1,0 +1,101 @@
+package search
+
+import (
+	"math"
+
+	"parch/internal/routes"
+	"parch/internal/steps"
+)
+
+// Measures are what chains are compared by beside the water they leave.
+type Measures struct {
+	PerLitre                           float64 // money a litre delivered
+	Attended, WasteKg, EnergyKWh, Time float64 // a batch; h, kg, kWh, h
+}
+
+// MeasuresOf a run.
+func (t *Tuner) MeasuresOf(run *routes.Run) (Measures, error) {
+	cost, err := Cost.Of(run, t.Book, t.Case.Lot.BatchesPerYear)
+	return Measures{cost, run.HoursAttended, run.WasteKg, run.EnergyKWh, run.HoursTotal}, err
+}
+
+// aim is the value of the objective.
+func (t *Tuner) aim(m Measures) float64 {
+	of := map[Objective]float64{Cost: m.PerLitre, Time: m.Time, Waste: m.WasteKg, Energy: m.EnergyKWh}
+	if t.Mix == nil {
+		return of[t.Objective]
+	}
+	total := 0.0
+	for _, o := range Objectives {
+		if t.Mix.Weights[o] > 0 {
+			total += t.Mix.Weights[o] * of[o] / t.Mix.Unit[o]
+		}
+	}
+	return total
+}
+
+// Marks are what routes that reach the limit and are sure enough come to, by their
+// best settings and by others: what any further chain has to beat.
+type Marks struct {
+	tuner                    *Tuner
+	litres                   float64
+	anHour, aKWh, aKgOfWaste float64 // money
+	all                      []mark
+}
+
+type mark struct {
+	id string
+	Measures
+}
+
+// slight is the share of a batch's cost that savings of time, energy and waste have
+// to be worth together before a dearer chain is offered for their sake.
+const slight = 0.01
+
+// NewMarks has none yet.
+func NewMarks(t *Tuner) *Marks {
+	m := &Marks{tuner: t, litres: steps.LotVolume(t.Case.Mixture, t.Case.Feed, t.Case.Job.Site.RoomK) * 1e3}
+	price := func(item string) float64 {
+		if p, ok := t.Book[item]; ok {
+			return p.PerUnit.InexactFloat64()
+		}
+		return 0
+	}
+	m.anHour, m.aKWh = price("technician"), price("electricity")
+	for _, class := range []steps.WasteClass{steps.SolventWaste, steps.AqueousWaste, steps.WetSolidWaste} {
+		m.aKgOfWaste = math.Max(m.aKgOfWaste, price(t.Case.WasteItem(class)))
+	}
+	return m
+}
+
+// Set adds what a route comes to.
+func (m *Marks) Set(r routes.Route, measures Measures) {
+	m.all = append(m.all, mark{r.ID(), measures})
+}
+
+// Beats names a route, other than the chain itself, that costs no more than all the
+// bounds of a chain, is no worse by the objective, and from which the chain saves
+// next to nothing in attended time, energy and waste; "" where there is none.
+func (m *Marks) Beats(id string, bounds []Measures) string {
+	if len(bounds) == 0 {
+		return ""
+	}
+	by := ""
+	for _, bound := range bounds {
+		if by = m.beats(id, bound); by == "" {
+			return ""
+		}
+	}
+	return by
+}
+
+func (m *Marks) beats(id string, bound Measures) string {
+	for i := range m.all {
+		x := &m.all[i]
+		saved := m.anHour*math.Max(0, x.Attended-bound.Attended) + m.aKWh*math.Max(0, x.EnergyKWh-bound.EnergyKWh) + m.aKgOfWaste*math.Max(0, x.WasteKg-bound.WasteKg)
+		if x.id != id && x.PerLitre <= bound.PerLitre && m.tuner.aim(x.Measures) <= m.tuner.aim(bound) && saved <= slight*x.PerLitre*m.litres {
+			return x.id
+		}
+	}
+	return ""
+}
