@@ -180,14 +180,14 @@ func (b *Bounds) step(k *routes.Case, s routes.Stage) (tolls []toll, out steps.L
 	case steps.Trap, steps.Forerun:
 		return b.boiled(k, s)
 	}
-	last, err := k.Run(routes.Route{s}, blank(routes.Route{s}))
+	last, err := k.Run(routes.Route{s}, b.tuner.blank(routes.Route{s}))
 	if err != nil {
 		return nil, out, false, err
 	}
 	least, before := b.toll(&last), last
 	if s.Kind == steps.Salt { // before another step it is given the usual dose
 		alone := routes.Route{s, {Kind: steps.Buy}}
-		if before, err = k.Run(alone, blank(alone)); err != nil {
+		if before, err = k.Run(alone, b.tuner.blank(alone)); err != nil {
 			return nil, out, false, err
 		}
 		least = least.least(b.toll(&before))
@@ -227,7 +227,7 @@ const boilShare = 0.7
 // least.
 func (b *Bounds) boiled(k *routes.Case, s routes.Stage) (tolls []toll, out steps.Lot, ends bool, err error) {
 	alone := routes.Route{s}
-	short, err := k.RunTo(alone, blank(alone), k.Feed.Water()*leastEffort)
+	short, err := k.RunTo(alone, b.tuner.blank(alone), k.Feed.Water()*leastEffort)
 	if err != nil {
 		return nil, out, false, err
 	}
@@ -257,7 +257,7 @@ func (b *Bounds) bed(k *routes.Case, s routes.Stage) (tolls []toll, out steps.Lo
 	for _, after := range b.tuner.afterUse() {
 		least, found := toll{}, false
 		for _, v := range b.stands(s.Kind) {
-			set := blank(alone)
+			set := b.tuner.blank(alone)
 			set.Sieve[0] = after
 			if s.Kind == steps.Soak {
 				set.SoakHours[0], set.Stirred[0] = v.hours, v.stirred

@@ -1,0 +1,75 @@
+package search
+
+import (
+	"errors"
+	"testing"
+
+	"pgregory.net/rapid"
+
+	"parch/internal/routes"
+)
+
+// What a chain comes to at its best is never less than the bound that it is left
+// alone by: each of its measures, by the bound for one way to treat its sorbents.
+func TestBoundsHold(t *testing.T) {
+	held := 0
+	rapid.Check(t, func(rt *rapid.T) {
+		solvent := rapid.SampledFrom(solventsTried).Draw(rt, "solvent")
+		target := rapid.Float64Range(20, 300).Draw(rt, "target")
+		water := target * rapid.Float64Range(3, 60).Draw(rt, "times wetter")
+		objective := rapid.SampledFrom(Objectives).Draw(rt, "objective")
+		tuner := tunerOf(t, lotYAML(string(objective), solvent, rapid.Float64Range(2, 40).Draw(rt, "litres"), 24, water, target, ""))
+		if tuner.Case.Dry() || tuner.Case.Limit.CannotShow != "" {
+			return
+		}
+		all := tuner.Case.Steps()
+		bounds := tuner.NewBounds(all)
+		branch := bounds.Root()
+		for len(branch.Route) < rapid.IntRange(1, 3).Draw(rt, "steps") {
+			next := rapid.SampledFrom(all).Draw(rt, "next")
+			if tuner.Case.MayFollow(branch.Route, next) != "" {
+				return
+			}
+			longer, err := bounds.Extend(branch, next)
+			if err != nil {
+				return
+			}
+			rough := bounds.Rough(branch, next)
+			branch = longer
+			run, err := tuner.Tune(branch.Route)
+			if errors.Is(err, routes.ErrRefused) || errors.Is(err, ErrTooSlow) || err == nil && !run.Meets {
+				continue
+			}
+			if err != nil {
+				rt.Fatal(err)
+			}
+			got, err := tuner.MeasuresOf(&run)
+			if err != nil {
+				rt.Fatal(err)
+			}
+			if !branch.Ends {
+				rt.Errorf("%s reaches the limit, yet its bound says that it cannot", branch.Route.ID())
+			}
+			held++
+			for _, least := range [][]Measures{rough, bounds.Of(branch)} {
+				if !anyBelow(least, got) {
+					rt.Errorf("%s from %g to %g mg/kg comes to %+v, bounds %+v", branch.Route.ID(), water, target, got, least)
+				}
+			}
+		}
+	})
+	if held < 20 {
+		t.Errorf("%d chains were held against their bounds: too few to tell", held)
+	}
+}
+
+// anyBelow reports whether a run lies above one of the bounds in everything.
+func anyBelow(bounds []Measures, m Measures) bool {
+	const slack = 1 + 1e-9
+	for _, b := range bounds {
+		if b.PerLitre <= m.PerLitre*slack && b.Attended <= m.Attended*slack && b.WasteKg <= m.WasteKg*slack && b.EnergyKWh <= m.EnergyKWh*slack && b.Time <= m.Time*slack {
+			return true
+		}
+	}
+	return false
+}
