@@ -24,6 +24,7 @@ var practiceKeys = map[string]quantity.Dimension{
 	"cooling-flow":          quantity.Flow,
 	"cooling-flow-minimum":  quantity.Flow,
 	"cooling-rise":          quantity.TemperatureDifference,
+	"condenser-difference":  quantity.TemperatureDifference,
 	"vapour-loss-per-day":   quantity.Share,
 	"coolant-tap":           quantity.Temperature,
 	"heat-up-maximum":       quantity.Time,

@@ -143,19 +143,20 @@ func (s *shelf) waterPair(n *document.Node, name string) *WaterPair {
 	return w
 }
 
-// modelLimit reads {not below: 20 °C, reason: ...}.
+// modelLimit reads {not below: 20 °C, reason: ...} or {pressure not below: 90 kPa, reason: ...}.
 func modelLimit(n *document.Node) (l thermo.Limit) {
-	f := n.Map("not below", "not above", "reason")
-	read := func(key string) float64 {
+	f := n.Map("not below", "not above", "pressure not below", "pressure not above", "reason")
+	read := func(key string, d quantity.Dimension) float64 {
 		if f.Get(key) == nil {
 			return 0
 		}
-		reading, _ := f.Get(key).Quantity(quantity.Temperature)
+		reading, _ := f.Get(key).Quantity(d)
 		return reading.SI
 	}
-	l.LowestK, l.HighestK, l.Reason = read("not below"), read("not above"), f.Need("reason").Text()
-	if l.LowestK == 0 && l.HighestK == 0 {
-		n.Fail(`gives neither "not below" nor "not above"`)
+	l.LowestK, l.HighestK, l.Reason = read("not below", quantity.Temperature), read("not above", quantity.Temperature), f.Need("reason").Text()
+	l.LowestPa, l.HighestPa = read("pressure not below", quantity.Pressure), read("pressure not above", quantity.Pressure)
+	if l.LowestK == 0 && l.HighestK == 0 && l.LowestPa == 0 && l.HighestPa == 0 {
+		n.Fail(`gives neither "not below" nor "not above", of a temperature or of the pressure`)
 	}
 	return l
 }

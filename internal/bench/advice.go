@@ -246,7 +246,12 @@ func (a *Answer) adviseKeeping() {
 		a.Case.Catalog.Practice["site-humidity"].Text, quantity.FormatWater(store.After(volume/10, 0)-a.Out.Water()),
 		quantity.FormatWater(store.PerLitre()), quantity.FormatWater(store.LeakPerDay))
 	if goal := a.Question.Goal; given(goal) && a.Out.Water() < goal*(1-1e-6) {
-		if use, err := store.UseBy(goal); err == nil {
+		const hardlyAny = 1e-3 // of the lot
+		switch use, err := store.UseBy(goal); {
+		case err != nil:
+		case use.LeastVolumeM3 < hardlyAny*volume:
+			a.tell("to keep", "it stays under %s until the last of it is drawn; undrawn it passes it after %s d: use it by then", quantity.FormatWater(goal), quantity.Significant(use.Days, 2))
+		default:
 			a.tell("to keep", "it passes %s with %s left of it, or undrawn after %s d: use it by then", quantity.FormatWater(goal), quantity.FormatVolume(use.LeastVolumeM3), quantity.Significant(use.Days, 2))
 		}
 	}

@@ -78,8 +78,14 @@ func (a *Answer) restsOnTrap() {
 	a.habit("efficiency at low water", "trap-efficiency")
 	a.habit("shortest reflux", "trap-reflux-minimum")
 	a.habit("share of it attended", "trap-attended-share")
-	a.habit("cooling water", "cooling-flow")
+	a.restsOnCondenser()
 	a.heater()
+}
+
+func (a *Answer) restsOnCondenser() {
+	a.habit("cooling water", "cooling-flow")
+	a.habit("cooling water as it comes in", "coolant-tap")
+	a.habit("least of the vapour over it", "condenser-difference")
 }
 
 func (a *Answer) heater() {

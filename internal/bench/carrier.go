@@ -131,7 +131,7 @@ func (a *Answer) restsOnForerun() {
 	a.habit("heat that reaches the liquid", "heat-share")
 	a.habit("lowest outlet claimed", "trap-outlet-minimum")
 	a.habit("share of it attended", "trap-attended-share")
-	a.habit("cooling water", "cooling-flow")
+	a.restsOnCondenser()
 	a.restsOn("hottest pot", a.Question.Solvent.HottestPot)
 	a.restsOnColumn()
 	a.heater()

@@ -165,7 +165,7 @@ func (c *Case) carrierRig(returns string, fillM3, usableM3 float64, lot steps.Lo
 	still, charges := smallestThatFits(c.ownedOrAll("still"), c.volume()+doseM3)
 	return steps.TrapRig{
 		HeaterW: c.heaterW(still), HeatShare: c.practice("heat-share"), Returns: returns,
-		FillVolumeM3: fillM3, UsableVolumeM3: usableM3, RoomK: c.Job.Site.RoomK, Charges: charges,
+		FillVolumeM3: fillM3, UsableVolumeM3: usableM3, RoomK: c.Job.Site.RoomK, Coolant: c.coolant(), Charges: charges,
 	}
 }
 

@@ -24,6 +24,10 @@ func (c *Case) runForerun(lot steps.Lot, goal float64, choice choice) (steps.Out
 	if err != nil {
 		return o, err
 	}
+	if choice.kPa > 0 {
+		o.Warnings = append(o.Warnings, fmt.Sprintf("drawn over at %.3g kPa: low enough for the pot, and what distils over condenses at %.3g K or more over the cooling water (common practice)",
+			choice.kPa, c.practice("condenser-difference")))
+	}
 	if column := c.columnOf(choice.stages); column != nil {
 		o.Apparatus = column.Key
 	}
@@ -36,7 +40,7 @@ func (c *Case) runForerun(lot steps.Lot, goal float64, choice choice) (steps.Out
 func (c *Case) forerunRig(stages int) steps.ForerunRig {
 	still, charges := c.Still()
 	rig := steps.ForerunRig{
-		HeaterW: c.heaterW(still), HeatShare: c.practice("heat-share"), RoomK: c.Job.Site.RoomK, CoolantK: c.coolantK(), Charges: charges, Stages: stages,
+		HeaterW: c.heaterW(still), HeatShare: c.practice("heat-share"), RoomK: c.Job.Site.RoomK, Coolant: c.coolant(), Charges: charges, Stages: stages,
 	}
 	if stages > 0 {
 		rig.RefluxRatio = c.practice("forerun-reflux")
@@ -87,6 +91,11 @@ func (c *Case) ForerunPressures() []float64 {
 func (c *Case) Overhead() bool {
 	eq, err := c.forerunAt(0)
 	return err == nil && eq.Overhead(c.Feed)
+}
+
+// coolant is the cooling water and what a condenser needs of it.
+func (c *Case) coolant() steps.Coolant {
+	return steps.Coolant{InK: c.coolantK(), DifferenceK: c.practice("condenser-difference")}
 }
 
 // coolantK is the temperature of the cooling water: of the tap, or as cold as a

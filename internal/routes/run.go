@@ -231,7 +231,7 @@ func (c *Case) boilOut(lot steps.Lot, goal float64, choice choice) (steps.Outcom
 	o, err := steps.RunTrap(trap, lot, goal, steps.TrapRig{
 		HeaterW: c.heaterW(still), HeatShare: c.practice("heat-share"), Returns: receiver.Returns,
 		FillVolumeM3: receiver.FillVolume.SI, UsableVolumeM3: receiver.Volume.SI,
-		RoomK: c.Job.Site.RoomK, Charges: charges,
+		RoomK: c.Job.Site.RoomK, Coolant: c.coolant(), Charges: charges,
 	}, rules)
 	if err == nil && choice.goesOn {
 		o.Out.TempK = o.Course[len(o.Course)-1].PotK

@@ -180,12 +180,25 @@ func (r *refluxing) start(feed Lot) error {
 	if r.startK <= r.rig.RoomK {
 		return fmt.Errorf("%w: the pot boils at %.1f °C at %.4g kPa, not above the room's %.1f °C", ErrNoCarrier, r.startK-273.15, r.eq.PressurePa/1e3, r.rig.RoomK-273.15)
 	}
+	if err := r.checkCoolant(); err != nil {
+		return fmt.Errorf("%w: %w", ErrNoCarrier, err)
+	}
 	fromK := feed.TempK
 	if fromK == 0 {
 		fromK = r.rig.RoomK
 	}
 	r.heatUpJ = r.sensible(r.s.pot, math.Min(fromK, r.startK), r.startK)
 	return checkHeater(r.heatUpJ, r.netW(), r.rules.LongestHeatUpS, total(r.s.pot)*r.m.MolarVolume(scaled(r.s.pot, 1/total(r.s.pot)), r.rig.RoomK))
+}
+
+// checkCoolant refuses a vapour that the condenser does not take. The lowest at
+// which it may have to is the boiling point of the azeotrope.
+func (r *refluxing) checkCoolant() error {
+	az := r.eq.Azeotrope
+	c := condense(r.rig.HeaterW, r.rig.HeatShare, r.rules.CoolingFlowM3S, r.rules.CoolingRiseK)
+	return r.rig.Coolant.takes(c, math.Min(az.TempK, r.startK), r.eq.PressurePa, func(tK float64) float64 {
+		return r.m.BubblePressure(az.Y, tK)
+	})
 }
 
 // carrierM3 is the molar volume of the carrier in the receiver.

@@ -28,7 +28,7 @@ type ForerunRig struct {
 	HeaterW     float64
 	HeatShare   float64 // of the heater's power that reaches the liquid
 	RoomK       float64
-	CoolantK    float64 // 0: not checked
+	Coolant     Coolant
 	Charges     int
 	Stages      int     // equilibrium stages of the column above the pot; 0 is a simple still
 	RefluxRatio float64 // moles returned to the column per mole drawn off; 0 for a simple still
@@ -244,16 +244,27 @@ func (d *drawing) checkTemperatures() error {
 	if d.startK <= d.rig.RoomK {
 		return fmt.Errorf("%w: %s boils at %.1f °C at %.4g kPa, not above the room's %.1f °C", ErrNoForerun, d.m.Solvent.Key, d.startK-273.15, kPa, d.rig.RoomK-273.15)
 	}
-	warmed := d.rig.CoolantK + condense(d.rig.HeaterW, d.rig.HeatShare, d.rules.CoolingFlowM3S, d.rules.CoolingRiseK).RunRiseK
-	if d.rig.CoolantK > 0 && d.at.headK <= warmed {
-		return fmt.Errorf("%w: the vapour condenses at %.1f °C at %.4g kPa, the coolant comes in at %.1f °C and leaves at %.1f °C",
-			ErrNoForerun, d.at.headK-273.15, kPa, d.rig.CoolantK-273.15, warmed-273.15)
+	if err := d.checkCoolant(); err != nil {
+		return fmt.Errorf("%w: %w", ErrNoForerun, err)
 	}
 	if hottest := math.Max(d.startK, d.eq.DryK); d.rig.HighestPotK > 0 && hottest > d.rig.HighestPotK {
 		return fmt.Errorf("%w: the pot reaches %.1f °C at %.4g kPa, the limit is %.1f °C; dry %s boils there at %.3g kPa",
 			ErrNoForerun, hottest-273.15, kPa, d.rig.HighestPotK-273.15, d.m.Solvent.Key, d.m.Solvent.VapourPressurePa.At(d.rig.HighestPotK)/1e3)
 	}
 	return nil
+}
+
+// checkCoolant refuses a first distillate that the condenser does not take. It is
+// all condensed where it would begin to boil.
+func (d *drawing) checkCoolant() error {
+	distillate, err := d.eq.vapour(d.firstY, d.at.headK)
+	if err != nil {
+		return err
+	}
+	c := condense(d.rig.HeaterW, d.rig.HeatShare, d.rules.CoolingFlowM3S, d.rules.CoolingRiseK)
+	return d.rig.Coolant.takes(c, distillate.TempK, d.eq.PressurePa, func(tK float64) float64 {
+		return d.m.BubblePressure(d.firstY, tK)
+	})
 }
 
 func (d *drawing) netW() float64 { return d.rig.HeaterW * d.rig.HeatShare }

@@ -186,7 +186,7 @@ func TestForerunRefusals(t *testing.T) {
 		"wetter than the azeotrope": {litres(m, 18, 0.2), eq, func(*steps.ForerunRig) {}, "azeotrope"},
 		"hot pot":                   {lot, eq, func(r *steps.ForerunRig) { r.HighestPotK = 330 }, "limit is 56.9 °C"},
 		"boils in the room":         {lot, boiler(t, m, 5e3), func(*steps.ForerunRig) {}, "room"},
-		"warm coolant":              {lot, eq, func(r *steps.ForerunRig) { r.CoolantK = 345 }, "coolant"},
+		"warm coolant":              {lot, eq, func(r *steps.ForerunRig) { r.Coolant.InK = 345 }, "coolant"},
 		"too many stages":           {lot, eq, func(r *steps.ForerunRig) { r.Stages = 21 }, "0 to 20"},
 		"no reflux":                 {lot, eq, func(r *steps.ForerunRig) { r.Stages = 5 }, "reflux"},
 		"no heat":                   {lot, eq, func(r *steps.ForerunRig) { r.HeaterW = 0 }, "heat"},
@@ -204,6 +204,29 @@ func TestForerunRefusals(t *testing.T) {
 	limited.LongestHeatUpS = 4 * 3600
 	if _, err := steps.RunForerun(eq, lot, 50e-6, weak, limited); !errors.Is(err, steps.ErrHeater) {
 		t.Errorf("20 W under 18 L: %v", err)
+	}
+}
+
+// A condenser does not take a vapour that condenses next to its cooling water.
+// Water boils at 17.5 °C at 2 kPa and at 22.4 °C at 2.7 kPa (steam tables); 10 K
+// between vapour and water are common practice, no source.
+func TestForerunRefusesVapourNextToTheCoolant(t *testing.T) {
+	m := mixture(t, "n-n-dimethylformamide")
+	lot := litres(m, 5, 0.01)
+	rig := still(5)
+	rig.HeaterW, rig.Coolant = 1300, steps.Coolant{InK: 283.15, DifferenceK: 10}
+	_, err := steps.RunForerun(boiler(t, m, 2e3), lot, 200e-6, rig, drawingRules)
+	const want = "condenses at 17.5 °C at 2 kPa, the coolant comes in at 10.0 °C and leaves at 14.7 °C: a condenser wants 10 K between the two on average (common practice), which takes 2.7 kPa or more"
+	if !errors.Is(err, steps.ErrNoForerun) || !strings.Contains(err.Error(), want) {
+		t.Errorf("at 2 kPa: %v", err)
+	}
+	if _, err := steps.RunForerun(boiler(t, m, 2.75e3), lot, 200e-6, rig, drawingRules); err != nil {
+		t.Errorf("at 2.75 kPa: %v", err)
+	}
+	// A simple still boils hot, and what comes over would boil far below the pot.
+	rig.Stages, rig.RefluxRatio, rig.Coolant.InK = 0, 0, 308.15
+	if _, err := steps.RunForerun(boiler(t, m, 2e3), lot, 200e-6, rig, drawingRules); !errors.Is(err, steps.ErrNoForerun) {
+		t.Errorf("without a column and with a coolant of 35 °C: %v", err)
 	}
 }
 

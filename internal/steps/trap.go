@@ -35,6 +35,7 @@ type TrapRig struct {
 	FillVolumeM3   float64 // condensate held before anything returns
 	UsableVolumeM3 float64 // aqueous layer held before it must be drained
 	RoomK          float64
+	Coolant        Coolant
 	Charges        int // the lot is boiled in so many equal charges
 }
 
@@ -189,9 +190,23 @@ func (b *boiling) start(feed Lot) error {
 	if b.startK <= b.rig.RoomK {
 		return fmt.Errorf("%w: %s boils at %.1f °C at %.4g kPa, not above the room's %.1f °C", ErrNoTrap, b.m.Solvent.Key, b.startK-273.15, b.eq.PressurePa/1e3, b.rig.RoomK-273.15)
 	}
+	if err := b.checkCoolant(); err != nil {
+		return fmt.Errorf("%w: %w", ErrNoTrap, err)
+	}
 	mid := (b.startK + b.rig.RoomK) / 2
 	b.heatUpJ = (b.water*b.m.Water.HeatCapacityJPerMolK.At(mid) + b.solvent*b.m.Solvent.HeatCapacityJPerMolK.At(mid)) * (b.startK - b.rig.RoomK)
 	return checkHeater(b.heatUpJ, b.netW(), b.rules.LongestHeatUpS, (b.water+b.solvent)*b.m.MolarVolume(b.fraction(), b.rig.RoomK))
+}
+
+// checkCoolant refuses a vapour that the condenser does not take. The lowest at
+// which it may have to is the boiling point of the azeotrope.
+func (b *boiling) checkCoolant() error {
+	tK, x := b.startK, b.fraction()
+	if az := b.eq.Azeotrope; az.Kind != thermo.NoAzeotrope && az.TempK < tK {
+		tK, x = az.TempK, az.YWater
+	}
+	c := condense(b.rig.HeaterW, b.rig.HeatShare, b.rules.CoolingFlowM3S, b.rules.CoolingRiseK)
+	return b.rig.Coolant.takes(c, tK, b.eq.PressurePa, func(tK float64) float64 { return b.m.BubblePressure(x, tK) })
 }
 
 func (b *boiling) fraction() float64 { return b.water / (b.water + b.solvent) }
