@@ -34,7 +34,7 @@ func TestQuickSoakIsTheSoak(t *testing.T) {
 		m, rig, sieve := mixture(t, solvent), bottle(t, solvent, 0.25), sieve3A(t, 0.02)
 		feed := litres(m, 18, 400e-6)
 		const doseKg, timeS = 1.2, 40 * 3600.0
-		quick, err := steps.NewQuickSoak(m, feed, doseKg, timeS, sieve, rig)
+		quick, err := steps.NewQuickSoak(m, feed, doseKg, timeS, 1, sieve, rig)
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -417,7 +417,7 @@ func TestEqualChargesByHand(t *testing.T) {
 func BenchmarkIsothermInversion(b *testing.B) {
 	m, rig, sieve := mixture(b, "toluene"), bottle(b, "toluene", 0.25), sieve3A(b, 0.02)
 	feed := litres(m, 18, 400e-6)
-	quick, err := steps.NewQuickSoak(m, feed, 1.2, 40*3600, sieve, rig)
+	quick, err := steps.NewQuickSoak(m, feed, 1.2, 40*3600, 1, sieve, rig)
 	if err != nil {
 		b.Fatal(err)
 	}
