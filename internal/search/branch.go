@@ -237,7 +237,7 @@ func (b *Bounds) boiled(k *routes.Case, s routes.Stage) (tolls []toll, out steps
 	if err != nil {
 		return nil, out, false, err
 	}
-	out, ends = b.handedOver(short.Outcomes[0].Out, far.WaterOut)
+	out, ends = b.handedOver(far.Outcomes[0].Out, far.WaterOut) // what it loses at most makes what follows small
 	return []toll{b.toll(&short).times(boilShare)}, out, ends, nil
 }
 
@@ -248,6 +248,10 @@ func (b *Bounds) handedOver(kept steps.Lot, water float64) (out steps.Lot, ends 
 	out.WaterKg = out.SolventKg * w / (1 - w)
 	return out, water <= b.goal()
 }
+
+// leastKept is left of a lot on beads of which more are taken than the least, and
+// roundly takes up what small changes of a lot make of the work on it.
+const leastKept, roundly = 0.9, 0.97
 
 // bed is a soak or a column: the longest stand, still or stirred, needs the least
 // sorbent, the shortest takes the least time.
@@ -278,10 +282,11 @@ func (b *Bounds) bed(k *routes.Case, s routes.Stage) (tolls []toll, out steps.Lo
 			if o := run.Outcomes[0]; o.Out.Water() < driest {
 				driest = o.Out.Water()
 				out, ends = b.handedOver(o.Out, driest)
+				out.SolventKg, out.WaterKg = out.SolventKg*leastKept, out.WaterKg*leastKept
 			}
 		}
 		if found {
-			tolls = append(tolls, least)
+			tolls = append(tolls, least.times(roundly))
 		}
 	}
 	if tolls == nil {
