@@ -131,7 +131,7 @@ func (b *Bounds) ahead(from Branch, s routes.Stage) toll {
 	if n := len(from.Route); s.Kind == steps.Forerun && n > 0 && from.Route[n-1].Kind == steps.Trap {
 		return toll{}
 	}
-	return b.anywhere[s]
+	return b.anywhere[s].times(math.Min(1, from.lot.Lot.BatchM3/b.tuner.Case.Lot.BatchM3)) // of the lot that is left
 }
 
 // Of a branch as it stands.
