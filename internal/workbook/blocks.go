@@ -193,6 +193,7 @@ var sieveColumns = []liveColumn{
 	{"dry", "No free water", "1", "({w}<=MAX({excess}*{lot.sat},{lot.w}*(1+job_tie*1000)))*1"}, constant("excess", "Free water from, times saturation", "1"),
 	constant("billed", "The bill has an oven", "1"), constant("gaskg", "Gas that flushes a kg of solvent off", "m3/kg"), constant("condensed", "Share that is caught", "1"), constant("flushwork", "Work of the flush, of that of the oven", "1"), constant("flushbilled", "The bill has a flush", "1"),
 	{"flushed", "Flushed", "1", "{again}*({gaskg}+{condensed}>0)"}, constant("lots", "Lots over a charge", "1"), {"runs", "Oven runs", "1", "IF({again}+{activated}>0,{agent}/{lots}/{ovenkg},0)"},
+	{"inbill", "The bill has what is done with it", "1", "(({runs}>0)*1={billed})*({flushed}={flushbilled})"},
 }
 
 var sieveUses = map[string]string{"used": "{agent}/{uses}/{lots}", "waste1": "({agent}/{lots}+{held})/{uses}", "ovenkwh": "{runs}*{runkwh}", "besides": "{runs}*{runh}*(1+{again}*{flushwork})", "gas": "{flushed}*{gaskg}*{held}", "waste2": "{flushed}*{condensed}*{held}", "loss1": "{held}" + toLitres}
@@ -239,7 +240,7 @@ func soakBlock() *liveBlock {
 	return newLiveBlock("soak", "Soaks", common(with(map[string]string{
 		"Sout": "{S}-{held}", "Wout": "{Sout}*{out}/(1-{out})", "hours": "{h}+{attended}", "attended": "{lot.vessels}*{att}" + toHours,
 		"energy": "{stir}*{lot.vessels}*{stirw}*{h}/1000", "agent": "{m}", "pieces": "{lot.vessels}",
-		"follows": "{first}*{dry}*(({runs}>0)*1={billed})*({flushed}={flushbilled})*{lot.vesselok}*{oncurve}*{solved}",
+		"follows": "{first}*{dry}*{inbill}*{lot.vesselok}*{oncurve}*{solved}",
 	}, sieveUses)), own)
 }
 
@@ -324,7 +325,7 @@ func columnBlock() *liveBlock {
 	return newLiveBlock("column", "Columns", common(with(map[string]string{
 		"Sout": "{S}-{held}", "Wout": "{Sout}*{out}/(1-{out})", "hours": "({setup}+{pumps})" + toHours, "attended": "({setup}+{share}*{pumps})" + toHours,
 		"energy": "{pumpw}*{pumps}" + toKWh, "agent": "{agentkg}", "pieces": "1",
-		"follows": "{first}*{dry}*(({runs}>0)*1={billed})*({flushed}={flushbilled})*({floor}<{w})*({heldin}>{q0})*({hasnarrow}*{meetsn}=0)*({haswide}*(1-{meets})=0)",
+		"follows": "{first}*{dry}*{inbill}*({floor}<{w})*({heldin}>{q0})*({hasnarrow}*{meetsn}=0)*({haswide}*(1-{meets})=0)",
 	}, sieveUses)), own)
 }
 
