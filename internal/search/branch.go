@@ -260,11 +260,13 @@ func (b *Bounds) bed(k *routes.Case, s routes.Stage) (tolls []toll, out steps.Lo
 	driest, last := math.Inf(1), errors.New("")
 	for _, after := range b.tuner.afterUse() {
 		least, found := toll{}, false
-		for _, v := range b.stands(s.Kind) {
+		for _, v := range b.treatments(s.Kind) {
 			set := b.tuner.blank(alone)
 			set.Sieve[0] = after
 			if s.Kind == steps.Soak {
 				set.SoakHours[0], set.Stirred[0] = v.hours, v.stirred
+				setCharges(&set, 0, v.charges)
+				setLotsOverCharge(&set, 0, v.lots)
 			}
 			run, err := k.Run(alone, set)
 			if err != nil {
@@ -295,10 +297,17 @@ func (b *Bounds) bed(k *routes.Case, s routes.Stage) (tolls []toll, out steps.Lo
 	return tolls, out, ends, nil
 }
 
-// stands that need the least sorbent.
-func (b *Bounds) stands(kind steps.Kind) []stand {
+// treatment of a bed: its stand, how often fresh sieve comes and how many lots go over it.
+type treatment struct {
+	stand
+	charges, lots int
+}
+
+// treatments that need the least sorbent: the longest stands, however many charges
+// there are and lots over one.
+func (b *Bounds) treatments(kind steps.Kind) (all []treatment) {
 	if kind == steps.Column {
-		return []stand{{}}
+		return []treatment{{charges: 1, lots: 1}}
 	}
 	longest := func(hours []float64) float64 {
 		most := hours[len(hours)-1]
@@ -307,5 +316,12 @@ func (b *Bounds) stands(kind steps.Kind) []stand {
 		}
 		return most
 	}
-	return []stand{{longest(soakHours), false}, {longest(stirredHours), true}}
+	for _, v := range []stand{{longest(soakHours), false}, {longest(stirredHours), true}} {
+		for _, charges := range chargesTried {
+			for _, lots := range b.tuner.lotsOverCharge() {
+				all = append(all, treatment{v, charges, lots})
+			}
+		}
+	}
+	return all
 }
