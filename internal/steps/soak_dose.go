@@ -123,10 +123,20 @@ const leastDose = 1e-6 // kg/m3, the lower end of the search
 // time and rate ask for:
 //
 //	w_eq = (w - w_0 e)/(1 - e), e = exp(-K(m) t)
+//
+// A goal next to what came in is reached by less than the least dose; one that only
+// the largest dose reaches may miss the balance by rounding.
 func (b *bath) exact(d SoakDose, goal, timeS float64) (SoakDose, error) {
-	lnDose, err := thermo.Brent(b.spare(goal, timeS), math.Log(leastDose), math.Log(d.Dose), 1e-12)
-	if err != nil {
-		return d, err
+	spare, least, most := b.spare(goal, timeS), math.Log(leastDose), math.Log(d.Dose)
+	lnDose := most
+	switch {
+	case spare(least) >= 0:
+		lnDose = least
+	case spare(most) > 0:
+		var err error
+		if lnDose, err = thermo.Brent(spare, least, most, 1e-12); err != nil {
+			return d, err
+		}
 	}
 	d.Dose, d.Enough = math.Exp(lnDose), true
 	if least := b.sorbent.MinDoseKgPerM3; d.Dose < least {

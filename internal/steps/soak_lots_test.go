@@ -104,3 +104,20 @@ func TestQuickSoakInEveryForm(t *testing.T) {
 		}
 	}
 }
+
+// A hand-over next to what came in, or at what only the largest dose reaches, has its
+// dose: the search for one meets no wall at its ends.
+func TestGoalsAtTheEndsOfTheDoses(t *testing.T) {
+	m, rig, sieve := mixture(t, "ethyl-acetate"), bottle(t, "ethyl-acetate", 0.25), sieve3A(t, 0.02)
+	feed := litres(m, 2, 80e-6)
+	most, err := steps.SoakOver(m, feed, sieve.MaxDoseKgPerM3, 24*3600, sieve, rig)
+	if err != nil {
+		t.Fatal(err)
+	}
+	for _, goal := range []float64{feed.Water() * (1 - 1e-15), feed.Water() * (1 - 1e-9), most.Out.Water(), most.Out.Water() * (1 + 1e-15)} {
+		o, err := steps.SoakFor(m, feed, goal, 24*3600, sieve, rig)
+		if err != nil || o.Out.Water() > goal*(1+1e-9) {
+			t.Errorf("a goal of %.12g mg/kg from %.12g: %.12g, %v", 1e6*goal, 1e6*feed.Water(), 1e6*o.Out.Water(), err)
+		}
+	}
+}
