@@ -26,12 +26,19 @@ type Activation struct {
 
 func noActivation() Activation { return Activation{Low: math.NaN(), High: math.NaN()} }
 
-func ofHistory(h catalog.History) Activation {
-	a := Activation{Key: h.Key, Text: h.Text, OvenK: h.TemperatureK, KgPerKg: h.ResidualKgPerKg.SI, Low: math.NaN(), High: math.NaN(), Origin: h.ResidualKgPerKg.Origin}
+func (r *reader) ofHistory(h catalog.History) Activation {
+	a := Activation{Key: h.Key, Text: h.Text, OvenK: h.TemperatureK, KgPerKg: h.ResidualKgPerKg.SI, Origin: h.ResidualKgPerKg.Origin}
+	a.Low, a.High = r.residualBand(a.KgPerKg)
 	if h.ResidualKgPerKg.Banded() {
 		a.Low, a.High = h.ResidualKgPerKg.Low, h.ResidualKgPerKg.High
 	}
 	return a
+}
+
+// residualBand is that of a history without a band of its own.
+func (r *reader) residualBand(kgPerKg float64) (low, high float64) {
+	factor := r.cat.Doubts[catalog.DoubtResidual].SI
+	return kgPerKg / factor, kgPerKg * factor
 }
 
 // usualHistory is taken where none is given.
@@ -45,8 +52,8 @@ func (r *reader) activated() {
 		text = usualHistory
 	}
 	for _, h := range r.cat.Histories {
-		if strings.EqualFold(h.Key, strings.TrimSpace(text)) {
-			r.q.Activation = ofHistory(h)
+		if strings.EqualFold(h.Key, strings.Join(strings.Fields(text), "-")) {
+			r.q.Activation = r.ofHistory(h)
 			return
 		}
 	}
@@ -99,32 +106,54 @@ func leadingTemperature(text string) (tK float64, rest []string, err error) {
 	return 0, nil, fmt.Errorf("no temperature")
 }
 
-// aftercare reads what was done with a sieve after the oven.
+// aftercare reads what was done with a sieve after the oven, each of it once.
 func aftercare(words []string) (a steps.Activation, err error) {
 	rest := strings.ToLower(strings.Join(words, " "))
+	seen := map[string]bool{}
 	for rest != "" {
-		before := rest
-		for phrase, note := range map[string]func(){
-			"closed hot": func() { a.ClosedHot = true }, "closed while hot": func() { a.ClosedHot = true },
-			"left open": func() { a.LeftOpen = true },
-		} {
-			if after, ok := strings.CutPrefix(rest, phrase); ok {
-				note()
-				rest = strings.TrimSpace(after)
-			}
+		what, after, err := oneCare(rest, &a)
+		if err != nil {
+			return a, err
 		}
-		if after, ok := strings.CutPrefix(rest, "vacuum "); ok {
-			if a.VacuumPa, rest, err = leading(after, quantity.Pressure); err != nil {
-				return a, err
-			}
-		} else if days, after, err := leading(rest, quantity.Time); err == nil {
-			a.Days, rest = days/86400, after
+		if seen[what] {
+			return a, fmt.Errorf("%s is said twice", what)
 		}
-		if rest == before {
-			return a, fmt.Errorf("%s is not understood", quantity.Quote(rest))
-		}
+		seen[what], rest = true, after
+	}
+	switch {
+	case a.ClosedHot && a.LeftOpen:
+		return a, fmt.Errorf("closed hot and left open contradict each other")
+	case a.LeftOpen && a.Days == 0:
+		return a, fmt.Errorf("left open for how long? write it like \"left open, 3 d\"")
 	}
 	return a, nil
+}
+
+// oneCare takes one thing that was done off the beginning of the text.
+func oneCare(text string, a *steps.Activation) (what, rest string, err error) {
+	for _, phrase := range []string{"closed hot", "closed while hot"} {
+		if after, ok := strings.CutPrefix(text, phrase); ok {
+			a.ClosedHot = true
+			return "closed hot", strings.TrimSpace(after), nil
+		}
+	}
+	if after, ok := strings.CutPrefix(text, "left open"); ok {
+		a.LeftOpen = true
+		return "left open", strings.TrimSpace(after), nil
+	}
+	if after, ok := strings.CutPrefix(text, "vacuum "); ok {
+		a.VacuumPa, rest, err = leading(after, quantity.Pressure)
+		if err == nil && a.VacuumPa <= 0 {
+			err = fmt.Errorf("a vacuum of %s is not possible; write what its gauge reads, like \"vacuum 1 hPa\"", strings.TrimSpace(after))
+		}
+		return "the vacuum", rest, err
+	}
+	seconds, rest, err := leading(text, quantity.Time)
+	if err != nil {
+		return "", text, fmt.Errorf("%s is not understood", quantity.Quote(text))
+	}
+	a.Days = seconds / 86400
+	return "the time since", rest, nil
 }
 
 // leading takes a quantity of one or two words off the beginning of a text.
@@ -170,7 +199,7 @@ func (r *reader) fromOven(text string, ovenK float64, kept steps.Activation) {
 		if i := slices.IndexFunc(r.cat.Histories, func(h catalog.History) bool {
 			return math.Abs(h.TemperatureK-ovenK) < 1e-6 && strings.HasSuffix(h.Key, "-closed")
 		}); i >= 0 {
-			r.q.Activation = ofHistory(r.cat.Histories[i])
+			r.q.Activation = r.ofHistory(r.cat.Histories[i])
 			return
 		}
 	}
@@ -180,12 +209,12 @@ func (r *reader) fromOven(text string, ovenK float64, kept steps.Activation) {
 func (r *reader) interpolated(ovenK, kgPerKg float64, key string) {
 	for _, h := range r.cat.Histories {
 		if h.Key == key {
-			r.q.Activation = ofHistory(h)
+			r.q.Activation = r.ofHistory(h)
 			return
 		}
 	}
-	a := noActivation()
-	a.Text, a.OvenK, a.KgPerKg = quantity.FormatTemperature(ovenK)+" oven", ovenK, kgPerKg
+	a := Activation{Text: quantity.FormatTemperature(ovenK) + " oven", OvenK: ovenK, KgPerKg: kgPerKg}
+	a.Low, a.High = r.residualBand(kgPerKg)
 	a.Note = fmt.Sprintf("what the sieve still holds, %.2g g/100 g, is interpolated between the catalog's activation temperatures", 100*kgPerKg)
 	a.Origin = catalog.Origin{Source: "memory", Confidence: catalog.Memory, Note: "between figures from memory"}
 	r.q.Activation = a
@@ -200,8 +229,21 @@ func (r *reader) computed(text string, ovenK float64, kept steps.Activation) {
 		r.mistake(fmt.Sprintf("--activated: %s: %s", quantity.Quote(text), err), "")
 		return
 	}
-	r.q.Activation = Activation{
+	a := Activation{
 		Text: text, OvenK: ovenK, KgPerKg: left.KgPerKg, Low: left.Low, High: left.High, Note: strings.Join(left.Notes, "; "),
 		Origin: catalog.Origin{Source: "assumption", Confidence: catalog.Assumption, Note: "handling and standing are assumed"},
 	}
+	r.q.Activation = r.noDrierThanFresh(a, kept)
+}
+
+// noDrierThanFresh: what has stood since an oven in room air holds no less than the
+// catalog gives for that oven with ordinary handling.
+func (r *reader) noDrierThanFresh(a Activation, kept steps.Activation) Activation {
+	fresh, _, _, _, ok := job.ActivatedAt(r.cat.Histories, a.OvenK)
+	if !ok || kept.ClosedHot || kept.VacuumPa > 0 || a.KgPerKg >= fresh {
+		return a
+	}
+	a.KgPerKg, a.High = fresh, math.Max(a.High, fresh)
+	a.Note += fmt.Sprintf("; taken as %.2g, which is what the catalog has for that oven without standing", 100*fresh)
+	return a
 }

@@ -97,7 +97,7 @@ func (a Activation) check() error {
 	if err := checkAmount("an oven temperature", "°C", a.OvenK-273.15, 20, 650); err != nil {
 		return err
 	}
-	if err := checkAmount("a number of days", "", a.Days, 0, 36500); err != nil {
+	if err := checkAmount("a time since", "d", a.Days, 0, 36500); err != nil {
 		return err
 	}
 	return checkAmount("a vacuum", "Pa", a.VacuumPa, 0, 110e3)
