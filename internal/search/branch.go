@@ -192,7 +192,7 @@ func (b *Bounds) step(k *routes.Case, s routes.Stage) (tolls []toll, out steps.L
 		}
 		least = least.least(b.toll(&before))
 	}
-	return []toll{least}, before.Outcomes[0].Out, last.Outcomes[0].Out.Water() <= b.goal(), nil
+	return []toll{least.times(roundly)}, before.Outcomes[0].Out, last.Outcomes[0].Out.Water() <= b.goal(), nil
 }
 
 func (b *Bounds) goal() float64 { return b.tuner.Case.Goal() * (1 + 1e-9) }
