@@ -134,20 +134,34 @@ func costsInWorkbook(t *testing.T, path string) map[string]float64 {
 	var content struct {
 		Rows []struct {
 			Cells []struct {
-				Place string   `xml:"r,attr"`
-				Value string   `xml:"v"`
-				Text  string   `xml:"is>t"`
-				Runs  []string `xml:"is>r>t"`
+				Place string `xml:"r,attr"`
+				Type  string `xml:"t,attr"`
+				Value string `xml:"v"`
 			} `xml:"c"`
 		} `xml:"sheetData>row"`
 	}
 	read(sheet, &content)
+	var shared struct {
+		Texts []struct {
+			Text string   `xml:"t"`
+			Runs []string `xml:"r>t"`
+		} `xml:"si"`
+	}
+	read("xl/sharedStrings.xml", &shared)
 	costs := map[string]float64{}
 	heads := map[string]string{} // column by heading
 	for _, row := range content.Rows {
 		cells := map[string]string{}
 		for _, c := range row.Cells {
-			cells[strings.TrimRight(c.Place, "0123456789")] = c.Value + c.Text + strings.Join(c.Runs, "")
+			text := c.Value
+			if c.Type == "s" {
+				i, err := strconv.Atoi(c.Value)
+				if err != nil || i >= len(shared.Texts) {
+					t.Fatalf("%s: shared text %q", c.Place, c.Value)
+				}
+				text = shared.Texts[i].Text + strings.Join(shared.Texts[i].Runs, "")
+			}
+			cells[strings.TrimRight(c.Place, "0123456789")] = text
 		}
 		if heads["Cost per batch"] == "" {
 			for column, text := range cells {
