@@ -131,7 +131,14 @@ func (b *Bounds) ahead(from Branch, s routes.Stage) toll {
 	if n := len(from.Route); s.Kind == steps.Forerun && n > 0 && from.Route[n-1].Kind == steps.Trap {
 		return toll{}
 	}
-	return b.anywhere[s].times(math.Min(1, from.lot.Lot.BatchM3/b.tuner.Case.Lot.BatchM3)) // of the lot that is left
+	least := b.anywhere[s].times(math.Min(1, from.lot.Lot.BatchM3/b.tuner.Case.Lot.BatchM3)) // of the lot that is left
+	switch {
+	case len(from.Route) == 0:
+		return least
+	case s.Kind == steps.Salt: // the less is left to take, the smaller its dose
+		least.money, least.wasteKg = 0, 0
+	}
+	return least.times(laterShare)
 }
 
 // Of a branch as it stands.
@@ -160,8 +167,17 @@ func (b *Bounds) Extend(from Branch, s routes.Stage) (Branch, error) {
 	if err != nil {
 		return Branch{}, err
 	}
-	if after := b.ahead(from, s); after == (toll{}) {
+	after := b.ahead(from, s)
+	if after == (toll{}) {
 		tolls = []toll{after}
+	}
+	for i := range tolls {
+		if len(from.Route) > 0 {
+			tolls[i] = tolls[i].times(laterShare)
+		}
+		if s.Kind == steps.Column { // a drier lot takes a smaller tube, and that may take longer
+			tolls[i] = tolls[i].least(after)
+		}
 	}
 	next := Branch{Route: append(from.Route[:len(from.Route):len(from.Route)], s), Ends: ends, tolls: from.joined(tolls)}
 	lot := from.lot.Lot
@@ -249,65 +265,80 @@ func (b *Bounds) handedOver(kept steps.Lot, water float64) (out steps.Lot, ends 
 	return out, water <= b.goal()
 }
 
-// leastKept is left of a lot on beads of which more are taken than the least, and
-// roundly takes up what small changes of a lot make of the work on it.
-const leastKept, roundly = 0.9, 0.97
+// leastKept is left of a lot on beads of which more are taken than the least,
+// roundly takes up what small changes of a lot make of the work on it, and laterShare what
+// the steps before it make of both the lot and its water: the size and the time of a
+// tube, the dose of a salt and the charges of a still do not go one way with them.
+const leastKept, roundly, laterShare = 0.9, 0.97, 0.8
 
 // bed is a soak or a column: the longest stand, still or stirred, needs the least
-// sorbent, the shortest takes the least time.
+// sorbent, and the least water to take up the least of it; the shortest takes the
+// least time. Two charges leave the least water.
 func (b *Bounds) bed(k *routes.Case, s routes.Stage) (tolls []toll, out steps.Lot, ends bool, err error) {
-	alone := routes.Route{s}
 	driest, last := math.Inf(1), errors.New("")
+	lots := []int{1}
+	if s.Kind == steps.Soak {
+		lots = b.tuner.lotsOverCharge()
+	}
 	for _, after := range b.tuner.afterUse() {
 		least, found := toll{}, false
-		for _, v := range b.treatments(s.Kind) {
-			set := b.tuner.blank(alone)
-			set.Sieve[0] = after
+		count := func(run *routes.Run) {
+			x := b.toll(run)
 			if s.Kind == steps.Soak {
-				set.SoakHours[0], set.Stirred[0] = v.hours, v.stirred
-				setCharges(&set, 0, v.charges)
-				setLotsOverCharge(&set, 0, v.lots)
+				x.hours = math.Min(x.hours, stirredHours[0])
 			}
-			run, err := k.Run(alone, set)
-			if err != nil {
-				last = err
-				continue
-			}
-			x := b.toll(&run)
 			if found {
 				x = x.least(least)
 			}
 			least, found = x, true
-			if s.Kind == steps.Soak {
-				least.hours = math.Min(least.hours, stirredHours[0])
+		}
+		for _, v := range b.stands(s.Kind) {
+			for _, n := range lots {
+				if run, err := b.bedded(k, s, after, v, 1, n, k.Feed.Water()*leastEffort); err == nil {
+					count(&run)
+				}
 			}
-			if o := run.Outcomes[0]; o.Out.Water() < driest {
-				driest = o.Out.Water()
-				out, ends = b.handedOver(o.Out, driest)
-				out.SolventKg, out.WaterKg = out.SolventKg*leastKept, out.WaterKg*leastKept
+			for _, charges := range chargesTried {
+				run, err := b.bedded(k, s, after, v, charges, 1, k.Goal())
+				if err != nil {
+					last = err
+					continue
+				}
+				count(&run)
+				if o := run.Outcomes[0]; o.Out.Water() < driest {
+					driest = o.Out.Water()
+					out, ends = b.handedOver(o.Out, driest)
+					out.SolventKg, out.WaterKg = out.SolventKg*leastKept, out.WaterKg*leastKept
+				}
 			}
 		}
 		if found {
 			tolls = append(tolls, least.times(roundly))
 		}
 	}
-	if tolls == nil {
+	if tolls == nil || math.IsInf(driest, 1) {
 		return nil, out, false, last
 	}
 	return tolls, out, ends, nil
 }
 
-// treatment of a bed: its stand, how often fresh sieve comes and how many lots go over it.
-type treatment struct {
-	stand
-	charges, lots int
+// bedded runs a soak or a column alone, down to a goal (kg/kg).
+func (b *Bounds) bedded(k *routes.Case, s routes.Stage, after string, v stand, charges, lots int, goal float64) (routes.Run, error) {
+	alone := routes.Route{s}
+	set := b.tuner.blank(alone)
+	set.Sieve[0] = after
+	if s.Kind == steps.Soak {
+		set.SoakHours[0], set.Stirred[0] = v.hours, v.stirred
+		setCharges(&set, 0, charges)
+		setLotsOverCharge(&set, 0, lots)
+	}
+	return k.RunTo(alone, set, goal)
 }
 
-// treatments that need the least sorbent: the longest stands, however many charges
-// there are and lots over one.
-func (b *Bounds) treatments(kind steps.Kind) (all []treatment) {
+// stands that need the least sorbent.
+func (b *Bounds) stands(kind steps.Kind) []stand {
 	if kind == steps.Column {
-		return []treatment{{charges: 1, lots: 1}}
+		return []stand{{}}
 	}
 	longest := func(hours []float64) float64 {
 		most := hours[len(hours)-1]
@@ -316,12 +347,5 @@ func (b *Bounds) treatments(kind steps.Kind) (all []treatment) {
 		}
 		return most
 	}
-	for _, v := range []stand{{longest(soakHours), false}, {longest(stirredHours), true}} {
-		for _, charges := range chargesTried {
-			for _, lots := range b.tuner.lotsOverCharge() {
-				all = append(all, treatment{v, charges, lots})
-			}
-		}
-	}
-	return all
+	return []stand{{longest(soakHours), false}, {longest(stirredHours), true}}
 }
