@@ -132,10 +132,10 @@ func (b *Bounds) ahead(from Branch, s routes.Stage) toll {
 		return toll{}
 	}
 	least := b.anywhere[s].times(math.Min(1, from.lot.Lot.BatchM3/b.tuner.Case.Lot.BatchM3)) // of the lot that is left
-	switch {
-	case len(from.Route) == 0:
+	if len(from.Route) == 0 {
 		return least
-	case s.Kind == steps.Salt: // the less is left to take, the smaller its dose
+	}
+	if s.Kind == steps.Salt { // the less is left to take, the smaller its dose
 		least.money, least.wasteKg = 0, 0
 	}
 	return least.times(laterShare)
@@ -175,7 +175,7 @@ func (b *Bounds) Extend(from Branch, s routes.Stage) (Branch, error) {
 		if len(from.Route) > 0 {
 			tolls[i] = tolls[i].times(laterShare)
 		}
-		if s.Kind == steps.Column { // a drier lot takes a smaller tube, and that may take longer
+		if s.Kind == steps.Column {
 			tolls[i] = tolls[i].least(after)
 		}
 	}
@@ -267,9 +267,10 @@ func (b *Bounds) handedOver(kept steps.Lot, water float64) (out steps.Lot, ends 
 
 // leastKept is left of a lot on beads of which more are taken than the least,
 // roundly takes up what small changes of a lot make of the work on it, and laterShare what
-// the steps before it make of both the lot and its water: the size and the time of a
-// tube, the dose of a salt and the charges of a still do not go one way with them.
-const leastKept, roundly, laterShare = 0.9, 0.97, 0.8
+// the steps before it make of both the lot and its water: the dose of a salt and the
+// charges of a still do not go one way with them. Neither does the time of a tube: it
+// is left out, and of the work on it no more than tubeShare is counted.
+const leastKept, roundly, laterShare, tubeShare = 0.9, 0.97, 0.8, 0.8
 
 // bed is a soak or a column: the longest stand, still or stirred, needs the least
 // sorbent, and the least water to take up the least of it; the shortest takes the
@@ -286,6 +287,8 @@ func (b *Bounds) bed(k *routes.Case, s routes.Stage) (tolls []toll, out steps.Lo
 			x := b.toll(run)
 			if s.Kind == steps.Soak {
 				x.hours = math.Min(x.hours, stirredHours[0])
+			} else {
+				x.hours, x.attended = 0, x.attended*tubeShare
 			}
 			if found {
 				x = x.least(least)
