@@ -97,7 +97,11 @@ func (s *chains) thin() {
 	}
 	s.bounds.CheapestFirst(s.open)
 	for _, b := range s.open[mostOpen:] {
-		s.lot.Excluded = append(s.lot.Excluded, routes.Excluded{ID: b.Route.ID(), Reason: fmt.Sprintf("not looked at, nor what begins so: %d chains of %d steps cost less at least", mostOpen, len(b.Route)), Beaten: true})
+		id, also := b.Route.ID(), ", nor what begins so"
+		if s.ran[id] {
+			id, also = id+"+…", ""
+		}
+		s.lot.Excluded = append(s.lot.Excluded, routes.Excluded{ID: id, Reason: fmt.Sprintf("not looked at%s: %d beginnings as long cost less at least", also, mostOpen), Beaten: true})
 	}
 	s.open = s.open[:mostOpen]
 }

@@ -4,6 +4,7 @@ import (
 	"context"
 	"flag"
 	"fmt"
+	"maps"
 	"math"
 	"os"
 	"runtime"
@@ -171,18 +172,18 @@ func TestEffortGrowsWithTheRoutes(t *testing.T) {
 
 // ranAlone counts the routes of one step, those left out because others are better
 // among them.
-func ranAlone(l *study.Lot) (n int) {
+func ranAlone(l *study.Lot) int {
+	ids := map[string]int{}
 	for _, r := range l.Routes {
-		if !strings.Contains(r.ID, "+") {
-			n++
-		}
+		ids[r.ID]++
 	}
 	for _, e := range l.Excluded {
-		if e.Beaten && !strings.Contains(e.ID, "+") {
-			n++
+		if e.Beaten {
+			ids[e.ID]++
 		}
 	}
-	return n
+	maps.DeleteFunc(ids, func(id string, _ int) bool { return strings.Contains(id, "+") })
+	return len(ids)
 }
 
 // soakedLot is what the draws are made for.
