@@ -14,6 +14,7 @@ const (
 	mostProduct  = 120 // combinations of the axes that are all tried
 	mostRefined  = 40  // runs of one refinement, for each hand-over
 	shortAxis    = 4   // values that are all tried where a long axis is walked
+	pairedWithin = 2   // places between two axes that are tried together
 )
 
 // everywhere scans the hand-overs coarsely, each point with the axes found best at
@@ -42,6 +43,7 @@ func (g *tuning) everywhere() {
 	before := g.best.score
 	if g.allAxes(g.best.spot.clone()); g.hasLate() {
 		g.descend(g.best.spot.clone(), true)
+		g.inPairs()
 	}
 	if g.best.score < before {
 		g.refine(0.25 / (coarsePoints - 1))
@@ -193,6 +195,30 @@ func (g *tuning) descend(s spot, lateToo bool) {
 			}
 			better = better || lowest < before
 		}
+	}
+}
+
+// inPairs walks a late axis from the best to either side and the axis beside it
+// downhill at each value, until that brings nothing: how long a sieve stands and how
+// many lots go over it rise together, and neither alone helps.
+func (g *tuning) inPairs() {
+	for before := math.Inf(1); g.best.score < before; {
+		before = g.best.score
+		for i := range g.axes {
+			for k := max(0, i-pairedWithin); k <= i+pairedWithin && k < len(g.axes); k++ {
+				if k != i && g.axes[i].late {
+					g.ridge(g.best.spot.clone(), i, k, 1)
+					g.ridge(g.best.spot.clone(), i, k, -1)
+				}
+			}
+		}
+	}
+}
+
+// ridge takes a step along axis i again and again, and goes downhill along k after each.
+func (g *tuning) ridge(s spot, i, k, step int) {
+	for s.at[i] += step; s.at[i] >= 0 && s.at[i] < g.axes[i].count; s.at[i] += step {
+		g.downhill(s, k, g.try(s))
 	}
 }
 

@@ -16,7 +16,7 @@ const (
 	fewJobs, fewPoints   = 10, 40
 	manyPoints           = 160
 	worse                = 0.005 // share by which the search may be worse than the grid
-	mostGridCombinations = 400
+	mostGridCombinations = 1200
 )
 
 // The settings found are held against every combination of the axes at each of many
