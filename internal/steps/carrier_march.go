@@ -12,7 +12,7 @@ const (
 	carrierLongestStep  = 2.0             // of the pot
 	carrierShortestStep = goneShare / 100 // of the pot, so that a trace boiled off at a steady rate is followed until it is gone
 	carrierMostSteps    = 3000
-	carrierJumpStep     = 1e-7 // of the pot: the end is known to so much where the layers end at once
+	carrierJumpStep     = 1e-6 // of the pot: the end is known to so much where the layers end at once
 	progressAccuracy    = 2e-5
 	mostGrowth          = 1.0 // of ln n in a step; nothing in the pot should grow
 )
@@ -47,13 +47,14 @@ func (r *refluxing) march(rate flow, progress func(*state, *condensed) float64, 
 			p.overshot(after)
 			continue
 		}
+		quicker := quickness(&next, &last) / quickness(&r.s, &slope)
 		r.s, slope, c = next, last, lastC
 		r.note(&c)
 		watch(&r.s, &c)
 		if after > 1-progressAccuracy {
 			return nil
 		}
-		p.accepted(off, after, carrierLongestStep*total(r.s.pot))
+		p.accepted(off, after, quicker, carrierLongestStep*total(r.s.pot))
 	}
 	return fmt.Errorf("%w: %s and %s, %d steps, %.3g mg/kg of water in the pot", ErrUnsolved,
 		r.m.Pure[inSolvent].Key, r.m.Pure[inCarrier].Key, len(r.course), r.dryness(&r.s)*mgPerKg)
@@ -112,8 +113,8 @@ func (r *refluxing) advance(flows flow, first *state, h float64) (next, slope st
 	return next, k[stages-1], c, r.stepError(h, &next, mixed(&errorWeights, &g, stages)), nil
 }
 
-// stepError is the difference of the results of both orders over what is
-// allowed; traces below a part in ten million of the pot do not count.
+// stepError is the difference of the results of both orders over what is allowed, of
+// what counts.
 func (r *refluxing) stepError(h float64, s *state, difference Fractions) (off float64) {
 	allowed := r.plan.StepError
 	if allowed <= 0 {
@@ -121,7 +122,7 @@ func (r *refluxing) stepError(h float64, s *state, difference Fractions) (off fl
 	}
 	for i := range s.pot {
 		e := h * math.Abs(difference[i])
-		off = math.Max(off, e*s.pot[i]/(allowed*(s.pot[i]+1e-7*total(s.pot))))
+		off = math.Max(off, e*counts(s, i)/allowed)
 	}
 	if math.IsNaN(off) {
 		return math.Inf(1)
@@ -138,6 +139,18 @@ func growth(s, d *state) (g Fractions) {
 	}
 	return g
 }
+
+// quickness is the largest growth or decay of what counts in the pot, per mole of vapour.
+func quickness(s, d *state) (largest float64) {
+	for i, g := range growth(s, d) {
+		largest = math.Max(largest, math.Abs(g)*counts(s, i))
+	}
+	return largest
+}
+
+// counts is 1 for a component of the pot and falls to 0 for a trace, below a part in
+// ten million.
+func counts(s *state, i int) float64 { return s.pot[i] / (s.pot[i] + 1e-7*total(s.pot)) }
 
 // goneShare is the mole share below which a component is gone: under 0.001 mg/kg of water.
 const goneShare = 1e-9

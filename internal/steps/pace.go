@@ -13,19 +13,17 @@ type pace struct {
 	progressPast float64 // progress there
 }
 
-// Factors of a step on the next one. The error of a pot that falls exponentially
-// grows faster with the step than its fifth power.
+// Factors of a step on the next one. The error grows with the fifth power of a step.
 const (
-	mostStretch  = 2.5
-	mostShrink   = 0.2
-	safety       = 0.9
-	stretchPower = 0.15
-	shrinkPower  = 0.2
+	mostStretch = 2.5
+	mostShrink  = 0.2
+	safety      = 0.7
+	power       = 0.2
 )
 
 // shorten after a step whose error is off times what is allowed.
 func (p *pace) shorten(off float64) {
-	p.step *= math.Max(mostShrink, safety*math.Pow(off, -shrinkPower))
+	p.step *= math.Max(mostShrink, safety*math.Pow(off, -power))
 	p.shortened = true
 }
 
@@ -45,15 +43,16 @@ func (p *pace) aim() {
 	p.step = p.past * math.Max(0.02, math.Min(0.98, share))
 }
 
-// accepted after a step that was taken.
-func (p *pace) accepted(off, progress, longest float64) {
+// accepted after a step that was taken, in which the pot became so many times quicker:
+// where a component is used up at a steady rate, the same error needs ever shorter steps.
+func (p *pace) accepted(off, progress, quicker, longest float64) {
 	taken := p.step
 	most := mostStretch
 	if p.shortened {
 		most = 1
 	}
-	stretch := safety * math.Pow(math.Max(off, 1e-9), -stretchPower)
-	p.step = math.Min(taken*math.Min(most, stretch), longest)
+	stretch := safety * math.Pow(math.Max(off, 1e-9), -power)
+	p.step = math.Min(taken*math.Min(most, stretch)/math.Max(1, quicker), longest)
 	p.done, p.shortened = progress, false
 	if p.past -= taken; p.past > p.least { // else the end is not where it was taken to be
 		free := p.step

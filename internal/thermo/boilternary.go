@@ -19,10 +19,8 @@ type Boiling struct {
 func (m *Ternary) Boil(x Fractions, pressurePa float64, near Boiling) (Boiling, error) {
 	x = lifted(x)
 	if near.Split.Exists && near.Split.outer {
-		if split, err := m.split(x, near.TempK, near.Split); err == nil && split.Exists {
-			if b, err := m.boilLayers(x, pressurePa, near.TempK, split); err == nil && b.Split.Exists {
-				return b, nil
-			}
+		if b, err := m.boilLayers(x, pressurePa, near.TempK, near.Split); err == nil && b.Split.Exists {
+			return b, nil
 		}
 	}
 	tK, y, err := m.bubble(&x, pressurePa, near.TempK)
@@ -101,8 +99,8 @@ func (m *Ternary) boilLayers(x Fractions, pressurePa, guessK float64, split Tern
 func (m *Ternary) follow(x Fractions, tK float64, near TernarySplit) (TernarySplit, error) {
 	if near.Exists {
 		l := m.at(tK)
-		if s, err := l.refine(&x, lnRatio(&near.Aqueous, &near.Organic), flashSoon); err == nil && s.Exists {
-			s.outer = near.outer
+		s, err := l.refine(&x, lnRatio(&near.Aqueous, &near.Organic), flashSoon)
+		if s.outer = near.outer; err == nil && s.Exists && (!s.outer || s.Aqueous[InWater] > wateryEnough) {
 			return s, nil
 		}
 	}

@@ -45,7 +45,8 @@ func BinaryNRTL(a12, b12, a21, b21, alpha float64) NRTL {
 // x (which sum to one) and tK.
 func (m *NRTL) LnGamma(x Fractions, tK float64) Fractions {
 	tau, g := m.factors(tK)
-	return lnGamma(m.N, &tau, &g, &x)
+	tg := weighted(&tau, &g)
+	return lnGamma(m.N, &g, &tg, &x)
 }
 
 // Fractions are mole (or, where said, mass) fractions of water, solvent and carrier.
@@ -67,18 +68,32 @@ func (m *NRTL) factors(tK float64) (tau, g square) {
 	return tau, g
 }
 
-func lnGamma(n int, tau, g *square, x *Fractions) (ln Fractions) {
-	var s, c Fractions // s_j = sum_k x_k G_kj, c_j = sum_k x_k tau_kj G_kj
-	for j := range n {
-		for k := range n {
-			s[j] += x[k] * g[k][j]
-			c[j] += x[k] * tau[k][j] * g[k][j]
+// weighted are tau_ij G_ij.
+func weighted(tau, g *square) (tg square) {
+	for i := range tg {
+		for j := range tg[i] {
+			tg[i][j] = tau[i][j] * g[i][j]
 		}
 	}
+	return tg
+}
+
+// lnGamma is sum_j tau_ji G_ji x_j/s_i + sum_j x_j G_ij/s_j (tau_ij - c_j/s_j) with
+// s_j = sum_k x_k G_kj and c_j = sum_k x_k tau_kj G_kj.
+func lnGamma(n int, g, tg *square, x *Fractions) (ln Fractions) {
+	var share, mean Fractions // x_j/s_j, c_j/s_j
+	for j := range n {
+		var s, c float64
+		for k := range n {
+			s += x[k] * g[k][j]
+			c += x[k] * tg[k][j]
+		}
+		share[j], mean[j] = x[j]/s, c/s
+	}
 	for i := range n {
-		ln[i] = c[i] / s[i]
+		ln[i] = mean[i]
 		for j := range n {
-			ln[i] += x[j] * g[i][j] / s[j] * (tau[i][j] - c[j]/s[j])
+			ln[i] += share[j] * (tg[i][j] - g[i][j]*mean[j])
 		}
 	}
 	return ln

@@ -63,20 +63,21 @@ func (m *Ternary) LnGamma(x Fractions, tK float64) Fractions {
 
 // liquid is the model at one temperature.
 type liquid struct {
-	tau, g square
-	extra  TernaryTerm
-	slope  float64 // 298.15 K/T - 1
-	mix    bool    // solvent and carrier mix
+	g, tg square // G and tau G
+	extra TernaryTerm
+	slope float64 // 298.15 K/T - 1
+	mix   bool    // solvent and carrier mix
 }
 
 func (m *Ternary) at(tK float64) liquid {
 	l := liquid{extra: m.Extra, slope: 298.15/tK - 1, mix: m.MixAboveK > 0 && tK > m.MixAboveK}
-	l.tau, l.g = m.NRTL.factors(tK)
+	tau, g := m.NRTL.factors(tK)
+	l.g, l.tg = g, weighted(&tau, &g)
 	return l
 }
 
 func (l *liquid) lnGamma(x *Fractions) Fractions {
-	ln := lnGamma(MaxComponents, &l.tau, &l.g, x)
+	ln := lnGamma(MaxComponents, &l.g, &l.tg, x)
 	if l.extra == (TernaryTerm{}) {
 		return ln
 	}
