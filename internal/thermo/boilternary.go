@@ -100,7 +100,7 @@ func (m *Ternary) follow(x Fractions, tK float64, near TernarySplit) (TernarySpl
 	if near.Exists {
 		l := m.at(tK)
 		s, err := l.refine(&x, lnRatio(&near.Aqueous, &near.Organic), flashSoon)
-		if s.outer = near.outer; err == nil && s.Exists && (!s.outer || s.Aqueous[InWater] > wateryEnough) {
+		if s.outer = near.outer; err == nil && s.Exists && (!s.outer || s.trusted()) {
 			return s, nil
 		}
 	}

@@ -58,7 +58,7 @@ func (m *Ternary) split(z Fractions, tK float64, guess TernarySplit) (TernarySpl
 	l := m.at(tK)
 	search := splitSearch{liquid: &l, z: z}
 	if guess.Exists && guess.outer && search.try(&guess.Aqueous, &guess.Organic, flashSoon) {
-		if search.best.outer = search.best.Aqueous[InWater] > wateryEnough; search.best.outer {
+		if search.best.outer = search.best.trusted(); search.best.outer {
 			return search.best, nil
 		}
 		search.best = TernarySplit{}
@@ -68,7 +68,7 @@ func (m *Ternary) split(z Fractions, tK float64, guess TernarySplit) (TernarySpl
 	}
 	dry, watery := outside(&z)
 	if search.try(&watery, &dry, flashSoon) {
-		search.best.outer = search.best.Aqueous[InWater] > wateryEnough
+		search.best.outer = search.best.trusted()
 		return search.best, nil
 	}
 	starts := l.unstable(&z)
@@ -84,10 +84,14 @@ func (m *Ternary) split(z Fractions, tK float64, guess TernarySplit) (TernarySpl
 	return search.best, nil
 }
 
-// wateryEnough is the mole fraction of water of an aqueous layer below which a
-// neighbour's split is not trusted: the search could stay on a false pair of
-// layers, and the result would depend on where it came from.
-const wateryEnough = 0.15
+// trusted reports whether a split may be the guess for a neighbour's. With too little
+// water or too much carrier in its aqueous layer it may be a false pair of layers: a
+// search from there could stay on it where a watery layer exists, and the result would
+// depend on where it came from.
+func (s *TernarySplit) trusted() bool {
+	const leastWater, mostCarrier = 0.15, 0.15 // mole fractions
+	return s.Aqueous[InWater] > leastWater && s.Aqueous[InCarrier] < mostCarrier
+}
 
 // outside are a layer without water and one that is nearly all water.
 func outside(z *Fractions) (dry, watery Fractions) {
