@@ -252,16 +252,21 @@ func TestSheetFollowsEdits(t *testing.T) {
 			if err != nil {
 				t.Fatal(err)
 			}
+			data := written(t, first)
 			var tally tally
+			var office []edit
 			for i := range editsOfAJob {
 				rng := rand.New(rand.NewPCG(uint64(k), uint64(i)))
 				changes := randomChanges(rng, l)
 				given := cloned(settingsOf(first))
 				again := aliveReport(t, name, changes, given)
 				tally.compare(t, l, again, recalculated(t, l, changes), changes)
+				if i < officeEdits(t) {
+					office = append(office, edit{changes, again})
+				}
 			}
-			t.Logf("%d routes compared, %d to be run again; largest difference of money %.2g, hours %.2g, kg %.2g, water %.2g",
-				tally.compared, tally.flagged, tally.money, tally.hours, tally.kg, tally.water)
+			t.Log(tally)
+			t.Run("office program", func(t *testing.T) { t.Log(len(office), "files:", followsInOffice(t, l, data, office)) })
 			offered := 0
 			for _, lot := range first.Lots {
 				offered += len(lot.Routes)
@@ -277,6 +282,11 @@ func TestSheetFollowsEdits(t *testing.T) {
 type tally struct {
 	compared, flagged       int
 	money, hours, kg, water float64
+}
+
+func (y tally) String() string {
+	return fmt.Sprintf("%d routes compared, %d to be run again; largest difference of money %.2g, hours %.2g, kg %.2g, water %.2g",
+		y.compared, y.flagged, y.money, y.hours, y.kg, y.water)
 }
 
 func (y *tally) compare(t *testing.T, l *layout, again *study.Report, at sheetOf, changes []change) {
