@@ -248,7 +248,7 @@ func TestSheetFollowsEdits(t *testing.T) {
 			if err != nil {
 				t.Fatal(err)
 			}
-			l, err := layLive(m)
+			l, _, err := layLive(m)
 			if err != nil {
 				t.Fatal(err)
 			}

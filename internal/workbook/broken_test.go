@@ -21,7 +21,7 @@ func TestWhatIsBrokenIsSeen(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	l, err := layLive(m)
+	l, _, err := layLive(m)
 	if err != nil {
 		t.Fatal(err)
 	}

@@ -3,6 +3,7 @@ package workbook
 import (
 	"encoding/xml"
 	"fmt"
+	"io"
 	"regexp"
 	"slices"
 	"strconv"
@@ -109,8 +110,12 @@ func (g *grid) widest() (row []cell) {
 	return row
 }
 
-// appendCells adds the rows of a grid as a sheet holds them.
-func (w *file) appendCells(out []byte, g *grid) ([]byte, error) {
+// passOn is how much of a sheet is kept before it is passed on to be compressed.
+const passOn = 64 << 10
+
+// writeCells writes the rows of a grid as a sheet holds them.
+func (w *file) writeCells(to io.Writer, g *grid) error {
+	out := w.room
 	shared, next, ids := g.shares(), make([]int, len(g.widest())), 0
 	id := make([]int, len(next)) // of the formula that a column shares
 	names := make([]string, len(next))
@@ -151,12 +156,19 @@ func (w *file) appendCells(out []byte, g *grid) ([]byte, error) {
 			}
 			var err error
 			if out, err = appendFormula(out, x, f); err != nil {
-				return nil, err
+				return err
 			}
 		}
 		out = append(out, "</row>"...)
+		if len(out) > passOn {
+			if _, err := to.Write(out); err != nil {
+				return err
+			}
+			out = out[:0]
+		}
 	}
-	return out, nil
+	w.room = out
+	return nil
 }
 
 // sharedDigits are the digits stored of what a shared formula gives. A reader that

@@ -73,9 +73,9 @@ func (l *layout) costs() *grid {
 	l.writtenBlock(g)
 	l.litreBlock(g)
 	l.rankBlock(g)
-	g.putRow(frameRows+1, text(link, "Cost by head").linkTo(on(sheetCosts, at(1, l.headRows.first-2))),
-		text(link, "Cost per litre and per year").linkTo(on(sheetCosts, at(1, l.litreRows.first-2))))
-	g.put(4, frameRows+1, text(link, "Target and rank").linkTo(on(sheetCosts, at(1, l.rankRows.first-2))))
+	g.link(1, frameRows+1, "Cost by head", on(sheetCosts, at(1, l.headRows.first-2)))
+	g.link(2, frameRows+1, "Cost per litre and per year", on(sheetCosts, at(1, l.litreRows.first-2)))
+	g.link(4, frameRows+1, "Target and rank", on(sheetCosts, at(1, l.rankRows.first-2)))
 	return g
 }
 

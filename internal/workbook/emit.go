@@ -25,7 +25,7 @@ type file struct {
 	drawn          map[string][]cell // what the charts refer to
 	emitter        *emitter
 	texts          *texts
-	room           []byte // used for one sheet after the other
+	room           []byte // of a sheet, what is not yet passed on
 }
 
 // write checks everything, then writes the package.
@@ -36,7 +36,7 @@ func (w *file) write(out io.Writer) (err error) {
 	f := excelize.NewFile()
 	defer func() { err = errors.Join(err, f.Close()) }()
 	f.SetZipWriter(func(out io.Writer) excelize.ZipWriter {
-		return &parts{out: out, patch: w.patchPart, done: map[string]packed{}}
+		return &parts{out: out, make: w.makePart, done: map[string]packed{}}
 	})
 	if err := w.prepare(f); err != nil {
 		return err
@@ -44,7 +44,7 @@ func (w *file) write(out io.Writer) (err error) {
 	if err := f.SetCellStr(w.grids[0].name, "A1", ""); err != nil { // makes the part that holds the texts
 		return err
 	}
-	w.emitter = &emitter{file: f, styles: map[styled]int{}, overlays: map[look]int{}}
+	w.emitter = &emitter{file: f, styles: map[styled]int32{}, overlays: map[look]int{}}
 	w.texts = gather(w.grids)
 	if err := w.emitter.setStyles(w.grids); err != nil {
 		return err
@@ -116,7 +116,7 @@ func (w *file) prepare(f *excelize.File) error {
 // emitter writes grids and keeps the styles that they share.
 type emitter struct {
 	file     *excelize.File
-	styles   map[styled]int
+	styles   map[styled]int32
 	overlays map[look]int
 }
 
@@ -199,24 +199,19 @@ func (e *emitter) setStyles(grids []*grid) error {
 	return nil
 }
 
-func (e *emitter) style(s styled) (int, error) {
+func (e *emitter) style(s styled) (int32, error) {
 	if id, ok := e.styles[s]; ok {
 		return id, nil
 	}
 	id, err := e.file.NewStyle(s.style())
-	e.styles[s] = id
-	return id, err
+	e.styles[s] = int32(id)
+	return int32(id), err
 }
 
 func (e *emitter) links(g *grid) error {
-	for r, row := range g.rows {
-		for c, x := range row {
-			if x.goTo == "" {
-				continue
-			}
-			if err := e.file.SetCellHyperLink(g.name, at(c+1, r+1), x.goTo, "Location"); err != nil {
-				return err
-			}
+	for _, l := range g.links {
+		if err := e.file.SetCellHyperLink(g.name, l.from, l.to, "Location"); err != nil {
+			return err
 		}
 	}
 	return nil

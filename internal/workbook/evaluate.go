@@ -202,35 +202,59 @@ func (e *evaluator) alone(v any) (any, bool) {
 	return v, true
 }
 
-// spread applies a function of single values to blocks, place by place.
-func (e *evaluator) spread(f func([]any) any, args ...any) any {
-	length, columns := 0, 0
-	blocks := make([]array, len(args))
+// operand is a block or a single value, read place by place.
+type operand struct {
+	area            ref // where it is an area
+	values          []any
+	length, columns int
+}
+
+func operandOf(v any) operand {
+	switch x := v.(type) {
+	case ref:
+		columns := x.c2 - x.c1 + 1
+		return operand{area: x, length: columns * (x.r2 - x.r1 + 1), columns: columns}
+	case array:
+		return operand{values: x.values, length: len(x.values), columns: x.columns}
+	}
+	return operand{values: []any{v}, length: 1, columns: 1}
+}
+
+// at is the value at a place; a single value stands at every one.
+func (e *evaluator) at(o operand, k int) any {
+	if o.length == 1 {
+		k = 0
+	}
+	switch {
+	case k >= o.length:
+		return notFound
+	case o.area.g != nil:
+		return e.cell(o.area.g, o.area.c1+k%o.columns, o.area.r1+k/o.columns)
+	}
+	return o.values[k]
+}
+
+// operands are those of a function applied place by place, and the shape of what
+// it gives.
+func operands(args []any) (all []operand, length, columns int) {
+	all = make([]operand, len(args))
 	for i, a := range args {
-		switch x := a.(type) {
-		case ref:
-			blocks[i] = e.block(x)
-		case array:
-			blocks[i] = x
-		default:
-			blocks[i] = array{1, []any{a}}
-		}
-		if n := len(blocks[i].values); n > 1 || length == 0 {
-			length, columns = n, blocks[i].columns
+		all[i] = operandOf(a)
+		if n := all[i].length; n > 1 || length == 0 {
+			length, columns = n, all[i].columns
 		}
 	}
+	return all, length, columns
+}
+
+// spread applies a function of single values to blocks, place by place.
+func (e *evaluator) spread(f func([]any) any, args ...any) any {
+	all, length, columns := operands(args)
 	out := array{columns, make([]any, length)}
 	single := make([]any, len(args))
 	for k := range length {
-		for i, b := range blocks {
-			switch {
-			case len(b.values) == 1:
-				single[i] = b.values[0]
-			case k < len(b.values):
-				single[i] = b.values[k]
-			default:
-				single[i] = notFound
-			}
+		for i, o := range all {
+			single[i] = e.at(o, k)
 		}
 		out.values[k] = f(single)
 	}

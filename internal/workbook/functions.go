@@ -127,19 +127,32 @@ func (e *evaluator) ofMany(name string, args []any) any {
 		}
 		return noValue
 	case "SUMPRODUCT":
-		product := e.spread(func(x []any) any {
-			var v any = 1.0
-			for _, y := range x {
-				if _, isText := y.(string); isText && len(x) > 1 {
-					y = 0.0
-				}
-				v = operate("*", v, y)
-			}
-			return v
-		}, args...)
-		return e.fold("SUM", []any{product})
+		return e.sumOfProducts(args)
 	}
 	return e.fold(name, args)
+}
+
+// sumOfProducts multiplies blocks place by place and adds up. A text counts as 0
+// beside other blocks.
+func (e *evaluator) sumOfProducts(args []any) any {
+	all, length, _ := operands(args)
+	sum := 0.0
+	for k := range length {
+		product := 1.0
+		for _, o := range all {
+			v := e.at(o, k)
+			if f, bad := v.(fault); bad {
+				return f
+			}
+			x, isNumber := toNumber(v)
+			if !isNumber && len(all) == 1 {
+				return noValue
+			}
+			product *= x
+		}
+		sum += product
+	}
+	return sum
 }
 
 // placed is the number that stands at a place of the sorted numbers of an area.
@@ -173,15 +186,10 @@ func (e *evaluator) placed(area, place any, largest bool) any {
 func (e *evaluator) fold(name string, args []any) any {
 	sum, count, low, high, all, filled := 0.0, 0.0, math.Inf(1), math.Inf(-1), true, 0.0
 	for _, a := range args {
-		values := []any{a}
 		_, fromSheet := a.(ref)
-		switch x := a.(type) {
-		case ref:
-			values = e.block(x).values
-		case array:
-			values = x.values
-		}
-		for _, v := range values {
+		o := operandOf(a)
+		for k := range o.length {
+			v := e.at(o, k)
 			if f, bad := v.(fault); bad && name != "COUNT" && name != "COUNTA" {
 				return f
 			}

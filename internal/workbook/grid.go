@@ -10,24 +10,22 @@ import (
 	"github.com/xuri/excelize/v2"
 )
 
-// cell is one cell of a grid. A formula carries the value it must have.
+// cell is one cell of a grid. A formula carries the value it must have. A large
+// workbook has a million of them: the fields are ordered so that they take little room.
 type cell struct {
-	look    look
 	value   any    // nil, string or float64
 	formula string // without "="
 	format  string // number format
 	unit    string // unit of a number; "1" for a pure count
-	goTo    string // place in the workbook that a click leads to, "Costs!A7"
-	right   bool   // heading of a column of numbers
-
-	style   int   // of the file
-	tree    *node // of the formula, once it is read
-	running bool  // while the formula is computed
+	tree    *node  // of the formula, once it is read
+	style   int32  // of the file
+	look    look
+	right   bool // heading of a column of numbers
+	running bool // while the formula is computed
 }
 
 func (c cell) as(l look) cell            { c.look = l; return c }
 func (c cell) shown(format string) cell  { c.format = format; return c }
-func (c cell) linkTo(place string) cell  { c.look, c.goTo = link, place; return c }
 func text(l look, s string) cell         { return cell{look: l, value: s} }
 func number(v float64, unit string) cell { return cell{look: program, value: tidy(v), unit: unit} }
 func count(n int) cell                   { return number(float64(n), "1").shown("0") }
@@ -112,7 +110,11 @@ type grid struct {
 	charts        []placed
 	merged        []merge
 	breaks        []int // rows that start a printed page
+	links         []jump
 }
+
+// jump is a cell and the place in the workbook that a click on it leads to.
+type jump struct{ from, to string }
 
 // merge is a run of cells in a row that holds one text. Numbers are never merged.
 type merge struct{ row, first, last int }
@@ -135,10 +137,25 @@ func (g *grid) put(column, row int, c cell) {
 	for len(g.rows) < row {
 		g.rows = append(g.rows, nil)
 	}
-	for len(g.rows[row-1]) < column {
-		g.rows[row-1] = append(g.rows[row-1], cell{})
+	cells := g.rows[row-1]
+	if column > cap(cells) {
+		room := column
+		if row > 1 { // most rows are as long as the one above
+			room = max(room, len(g.rows[row-2]))
+		}
+		cells = append(make([]cell, 0, room), cells...)
 	}
-	g.rows[row-1][column-1] = c
+	if column > len(cells) {
+		cells = cells[:column]
+		g.rows[row-1] = cells
+	}
+	cells[column-1] = c
+}
+
+// link writes a text that leads to a place in the workbook.
+func (g *grid) link(column, row int, s, to string) {
+	g.put(column, row, text(link, s))
+	g.links = append(g.links, jump{at(column, row), to})
 }
 
 func (g *grid) putRow(row int, cells ...cell) {
@@ -172,7 +189,7 @@ func newGrid(name, purposeText, tab string, check cell, widths ...float64) *grid
 	g := &grid{name: name, purpose: purposeText, tab: tab, widths: widths, heights: map[int]float64{}, printColumns: len(widths)}
 	g.put(1, 1, text(title, name))
 	g.put(1, 2, text(purpose, purposeText))
-	g.put(1, 3, text(link, "Read me").linkTo(on(sheetReadMe, "A1")))
+	g.link(1, 3, "Read me", on(sheetReadMe, "A1"))
 	g.put(2, 3, check)
 	g.flags = append(g.flags,
 		flag{"B3", "check_total=0", pass},

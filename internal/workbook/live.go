@@ -2,7 +2,7 @@ package workbook
 
 import (
 	"fmt"
-	"regexp"
+	"strconv"
 	"strings"
 )
 
@@ -20,7 +20,8 @@ type liveColumn struct{ key, name, unit, formula string }
 // liveBlock is one kind of step: one formula per column.
 type liveBlock struct {
 	kind, title string
-	columns     []liveColumn // the common ones filled in, then the block's own
+	columns     []liveColumn   // the common ones filled in, then the block's own
+	places      map[string]int // of the keys
 	rows        rows
 	grid        *grid
 }
@@ -54,33 +55,25 @@ func commonIndex(key string) int {
 func ownFirst() int { return len(commonColumns) + 2 }
 
 // column is where a key stands in a block.
-func (b *liveBlock) column(key string) int {
-	for i, c := range b.columns {
-		if c.key == key {
-			if i < len(commonColumns) {
-				return i + 1
-			}
-			return i - len(commonColumns) + ownFirst()
-		}
-	}
-	return 0
-}
+func (b *liveBlock) column(key string) int { return b.places[key] }
 
 // newLiveBlock joins the common columns, with the block's formulas for them, and
 // the block's own.
 func newLiveBlock(kind, title string, common map[string]string, own []liveColumn) *liveBlock {
-	b := &liveBlock{kind: kind, title: title}
+	b := &liveBlock{kind: kind, title: title, places: map[string]int{}}
 	for _, c := range commonColumns {
 		c.formula = common[c.key]
 		b.columns = append(b.columns, c)
 	}
 	b.columns = append(b.columns, own...)
-	seen := map[string]bool{}
-	for _, c := range b.columns {
-		if seen[c.key] {
+	for i, c := range b.columns {
+		if b.places[c.key] > 0 {
 			panic("two columns of the block " + kind + " are called " + c.key)
 		}
-		seen[c.key] = true
+		b.places[c.key] = i + 1
+		if i >= len(commonColumns) {
+			b.places[c.key] = i - len(commonColumns) + ownFirst()
+		}
 	}
 	return b
 }
@@ -91,30 +84,42 @@ func isKey(key string) bool {
 	return i > 0 && i <= commonIndex("fed")
 }
 
-var braces = regexp.MustCompile(`\{[a-z]*\.?[A-Za-z0-9 _/-]+\}`)
-
 // expand writes the formula of a column for a row.
 func (b *liveBlock) expand(formula string, row int, lots *liveBlock, lotNo int) (string, error) {
-	var failed error
-	out := braces.ReplaceAllStringFunc(formula, func(s string) string {
-		key := s[1 : len(s)-1]
-		switch {
-		case strings.HasPrefix(key, "own."):
-			return fmt.Sprintf("lot%d_%s", lotNo, key[4:])
-		case strings.HasPrefix(key, "lot."):
-			if c := lots.column(key[4:]); c > 0 {
-				name := columnName(c)
-				return fmt.Sprintf("INDEX(%s$%d:%s$%d,$%s%d)", name, lots.rows.first, name, lots.rows.last, columnName(commonIndex("lotno")), row)
-			}
-		default:
-			if c := b.column(key); c > 0 {
-				return at(c, row)
-			}
+	var out strings.Builder
+	for rest := formula; ; {
+		before, after, found := strings.Cut(rest, "{")
+		out.WriteString(before)
+		if !found {
+			return out.String(), nil
 		}
-		failed = fmt.Errorf("block %s: no column %s in %q", b.kind, key, formula)
-		return s
-	})
-	return out, failed
+		key, left, _ := strings.Cut(after, "}")
+		place := b.placeOf(key, row, lots, lotNo)
+		if place == "" {
+			return formula, fmt.Errorf("block %s: no column %s in %q", b.kind, key, formula)
+		}
+		out.WriteString(place)
+		rest = left
+	}
+}
+
+// placeOf is what stands for a key in a formula, "" for an unknown one.
+func (b *liveBlock) placeOf(key string, row int, lots *liveBlock, lotNo int) string {
+	if own, ok := strings.CutPrefix(key, "own."); ok {
+		return "lot" + strconv.Itoa(lotNo) + "_" + own
+	}
+	if ofLot, ok := strings.CutPrefix(key, "lot."); ok {
+		c := lots.column(ofLot)
+		if c == 0 {
+			return ""
+		}
+		name := columnName(c)
+		return fmt.Sprintf("INDEX(%s$%d:%s$%d,$%s%d)", name, lots.rows.first, name, lots.rows.last, columnName(commonIndex("lotno")), row)
+	}
+	if c := b.column(key); c > 0 {
+		return at(c, row)
+	}
+	return ""
 }
 
 // lookup is the value of a curve between two of its nodes, place and share known.

@@ -51,7 +51,7 @@ var lookWords = []struct {
 	look       look
 	name, says string
 }{
-	{input, "input", "blue and outlined: may be edited"},
+	{likeInput, "input", "blue and outlined: may be edited"},
 	{formula, "formula", "black on white: computed by the sheet"},
 	{program, "value from the program", "grey: changes only by a new run"},
 	{field, "", "outlined and empty: to be filled in by hand on paper"},
@@ -63,6 +63,7 @@ var lookWords = []struct {
 func (l *layout) readMe() *grid {
 	g := newGrid(sheetReadMe, "Ways to dry a bulk solvent, compared: "+oneLine(l.report.Job.Title), tabText, checkCell(), 26, 120)
 	g.put(1, 3, text(plain, "Checks"))
+	g.links = nil // this is where the others lead to
 	g.mixed, g.frozenRows = true, frameRows
 	g.section("What it is")
 	g.say(text(plain, "parch"), "Computes how a bulk solvent can be dried by chains of steps, what each chain costs and how sure that is, and ranks the chains. This workbook is its answer for the job named below.")
@@ -73,7 +74,8 @@ func (l *layout) readMe() *grid {
 	g.numbered(useWords)
 	g.section("Sheets")
 	for _, s := range sheetPurposes {
-		g.say(text(link, s[0]).linkTo(on(s[0], "A1")), s[1])
+		g.say(text(link, s[0]), s[1])
+		g.links = append(g.links, jump{at(1, g.last()), on(s[0], "A1")})
 	}
 	g.section("Meaning of the cells")
 	for _, w := range lookWords {

@@ -259,7 +259,10 @@ func (l *layout) unfollowed(r *routeModel) (n int) {
 }
 
 func (l *layout) waterFormat() string {
-	return formatFor(each(l.routes, func(r *routeModel) float64 { return r.waterOut })...)
+	if l.waterShown == "" {
+		l.waterShown = formatFor(each(l.routes, func(r *routeModel) float64 { return r.waterOut })...)
+	}
+	return l.waterShown
 }
 
 // figuresShown routes of a lot have their figures in the workbook; --explain prints

@@ -3,24 +3,25 @@ package workbook
 import "github.com/xuri/excelize/v2"
 
 // look is the appearance of a cell and, with it, the cell's meaning.
-type look int
+type look uint8
 
 const (
-	plain   look = iota
-	title        // name of the sheet
-	purpose      // what the sheet is for
-	block        // heading of a block
-	heading      // heading of a column
-	words        // running text, wrapped
-	link         // jump to another sheet
-	input        // may be edited
-	formula      // computed by the sheet
-	program      // computed by the program: changes only by a new run
-	message      // state of the checks
-	pass         // flag
-	warn         // flag
-	fail         // flag
-	field        // left open, to be filled in by hand
+	plain     look = iota
+	title          // name of the sheet
+	purpose        // what the sheet is for
+	block          // heading of a block
+	heading        // heading of a column
+	words          // running text, wrapped
+	link           // jump to another sheet
+	input          // may be edited
+	formula        // computed by the sheet
+	program        // computed by the program: changes only by a new run
+	message        // state of the checks
+	pass           // flag
+	warn           // flag
+	fail           // flag
+	field          // left open, to be filled in by hand
+	likeInput      // shows what an input looks like
 )
 
 // paint is one row of the style table. Colours are RRGGBB.
@@ -57,6 +58,8 @@ var paints = map[look]paint{
 	warn:    {ink: "6B4A00", paper: "F6EBCB", bold: true, size: 10},
 	fail:    {ink: "7A1B12", paper: "F5DFD8", bold: true, size: 10},
 	field:   {ink: black, paper: white, size: 10, outlined: true, wrap: true},
+
+	likeInput: {ink: "143D6B", paper: "E6F0F8", size: 10, outlined: true},
 }
 
 // typeface of the whole workbook.

@@ -48,15 +48,14 @@ func Write(w io.Writer, r *study.Report) error {
 	if err != nil {
 		return fmt.Errorf("workbook: %w", err)
 	}
-	l, err := layLive(m)
+	l, e, err := layLive(m)
 	if err != nil {
 		return fmt.Errorf("workbook: %w", err)
 	}
-	grids := append([]*grid{l.readMe()}, l.grids...)
-	if err := evaluate(grids, l.names); err != nil {
+	if err := e.fillAll(l.grids); err != nil {
 		return fmt.Errorf("workbook: %w", err)
 	}
-	out := &file{title: "Drying routes: " + r.Job.Title, created: r.CatalogDate, grids: grids, names: l.names}
+	out := &file{title: "Drying routes: " + r.Job.Title, created: r.CatalogDate, grids: l.grids, names: l.names}
 	if err := out.write(w); err != nil {
 		return fmt.Errorf("workbook: %w", err)
 	}
@@ -65,23 +64,27 @@ func Write(w io.Writer, r *study.Report) error {
 
 // layLive lays out the sheets. Steps that the sheet would get wrong are given up and
 // shown as values of the program.
-func layLive(m *model) (*layout, error) {
+func layLive(m *model) (*layout, *evaluator, error) {
 	for {
 		l := lay(m)
+		if err := l.forget(); err != nil {
+			return nil, nil, err
+		}
 		e, err := newEvaluator(l.grids, l.names)
 		if err != nil {
-			return nil, err
+			return nil, nil, err
 		}
 		again, err := l.fallBack(e)
 		if err := errors.Join(err, l.failed); err != nil || !again {
-			return l, err
+			return l, e, err
 		}
 	}
 }
 
-// evaluate gives every formula the value that the sheets compute for it.
-func evaluate(grids []*grid, names []definedName) error {
-	for _, g := range grids {
+// forget leaves no value with a formula but what the sheets compute for it, and
+// refuses other values that a sheet cannot hold.
+func (l *layout) forget() error {
+	for _, g := range l.grids {
 		for r, row := range g.rows {
 			for c := range row {
 				if row[c].formula != "" {
@@ -92,10 +95,11 @@ func evaluate(grids []*grid, names []definedName) error {
 			}
 		}
 	}
-	e, err := newEvaluator(grids, names)
-	if err != nil {
-		return err
-	}
+	return nil
+}
+
+// fillAll gives every formula the value that the sheets compute for it.
+func (e *evaluator) fillAll(grids []*grid) error {
 	for _, g := range grids {
 		if err := e.fill(g); err != nil {
 			return err
@@ -104,7 +108,7 @@ func evaluate(grids []*grid, names []definedName) error {
 	return nil
 }
 
-// lay lays out all sheets but the first, which names them.
+// lay lays out all sheets; the first names the others.
 func lay(m *model) *layout {
 	l := &layout{model: m}
 	l.inOrder()
@@ -117,6 +121,7 @@ func lay(m *model) *layout {
 	l.grids = append([]*grid{l.decision()}, l.grids...) // it shows what later sheets hold
 	add(l.checks, l.sources)
 	l.workPages()
+	l.grids = append([]*grid{l.readMe()}, l.grids...)
 	return l
 }
 
@@ -152,7 +157,8 @@ type layout struct {
 	compareRows   rows
 	along         map[int]along // by lot
 	alongHead     int
-	rangeRows     rows // ranges
+	waterShown    string // format of the water that the routes leave
+	rangeRows     rows   // ranges
 }
 
 // rows is a run of rows; it is empty where last < first.

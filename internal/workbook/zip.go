@@ -21,25 +21,24 @@ const contentTypes = "[Content_Types].xml"
 
 // parts collects the parts of a package and writes them sorted, with one time
 // stamp, so that the same content always gives the same bytes. A part is
-// compressed as soon as the next one begins: a large workbook would not fit
-// beside itself.
+// compressed while it is made: a large workbook would not fit beside itself.
 type parts struct {
-	out   io.Writer
-	patch func(name string, part []byte) ([]byte, error)
+	out  io.Writer
+	make maker
 
 	open   string // the part that is being written
 	buffer bytes.Buffer
 	done   map[string]packed
 
-	writers map[int]*flate.Writer // by level
+	compressor *flate.Writer
 }
 
-// smallFile is the level at which a workbook of a few lots can be mailed and is
-// written at once.
-const smallFile = 7
+// maker writes a part as it is to be stored, given what the library wrote of it.
+type maker func(name string, written []byte, to io.Writer) error
 
-// largePart is the size from which time counts more than a few kilobytes.
-const largePart = 4 << 20
+// level of compression: above it the demonstration's workbook becomes smaller by a
+// twentieth and compressing takes three times as long.
+const level = 5
 
 // packed is a compressed part.
 type packed struct {
@@ -61,48 +60,44 @@ func (p *parts) Create(name string) (io.Writer, error) {
 
 func (p *parts) AddFS(fs.FS) error { return errors.New("adding a file system is not supported") }
 
-// finish patches and compresses the part that is being written.
+// finish makes the part that the library has written and compresses it.
 func (p *parts) finish() error {
 	if p.open == "" {
 		return nil
 	}
-	part, err := p.patch(p.open, p.buffer.Bytes())
-	if err != nil {
+	var data bytes.Buffer
+	if p.compressor == nil {
+		var err error
+		if p.compressor, err = flate.NewWriter(&data, level); err != nil {
+			return err
+		}
+	}
+	w := p.compressor
+	w.Reset(&data)
+	m := &measured{to: w}
+	if err := p.make(p.open, p.buffer.Bytes(), m); err != nil {
 		return fmt.Errorf("part %s: %w", p.open, err)
 	}
-	data, err := p.compress(part)
-	if err != nil {
+	if err := w.Close(); err != nil {
 		return err
 	}
-	p.done[p.open] = packed{data, uint64(len(part)), crc32.ChecksumIEEE(part)}
+	p.done[p.open] = packed{data.Bytes(), m.size, m.checksum}
 	p.open = ""
 	p.buffer.Reset()
 	return nil
 }
 
-func (p *parts) compress(part []byte) ([]byte, error) {
-	level := smallFile
-	if len(part) > largePart {
-		level = flate.BestSpeed
-	}
-	var data bytes.Buffer
-	w := p.writers[level]
-	if w == nil {
-		var err error
-		if w, err = flate.NewWriter(&data, level); err != nil {
-			return nil, err
-		}
-		if p.writers == nil {
-			p.writers = map[int]*flate.Writer{}
-		}
-		p.writers[level] = w
-	}
-	w.Reset(&data)
-	if _, err := w.Write(part); err != nil {
-		return nil, err
-	}
-	err := w.Close()
-	return data.Bytes(), err
+// measured counts what passes through.
+type measured struct {
+	to       io.Writer
+	size     uint64
+	checksum uint32
+}
+
+func (m *measured) Write(b []byte) (int, error) {
+	m.size += uint64(len(b))
+	m.checksum = crc32.Update(m.checksum, crc32.IEEETable, b)
+	return m.to.Write(b)
 }
 
 func (p *parts) Close() error {
@@ -142,23 +137,27 @@ func partOrder(name string) int {
 	return 2
 }
 
-// patchPart puts right what the writing library leaves open.
-func (w *file) patchPart(name string, part []byte) ([]byte, error) {
+// makePart puts right what the writing library leaves open.
+func (w *file) makePart(name string, part []byte, to io.Writer) (err error) {
 	switch {
 	case name == contentTypes:
-		return sortDefaults(part), nil
+		part = sortDefaults(part)
 	case strings.HasPrefix(name, "xl/charts/chart"):
-		return patchChart(part, w.drawnAt)
+		part, err = patchChart(part, w.drawnAt)
 	case strings.HasPrefix(name, "xl/drawings/drawing"):
-		return anchorBySize(part)
+		part, err = anchorBySize(part)
 	case name == "xl/sharedStrings.xml":
-		return w.texts.part(), nil
-	case strings.HasPrefix(name, "xl/worksheets/sheet"):
-		part = bytes.ReplaceAll(part, []byte("<colBreaks></colBreaks>"), nil) // an empty list
-		return w.withCells(name, part)
+		part = w.texts.part()
+	case strings.HasPrefix(name, sheetParts):
+		return w.withCells(name, part, to)
 	}
-	return part, nil
+	if err == nil {
+		_, err = to.Write(part)
+	}
+	return err
 }
+
+const sheetParts = "xl/worksheets/sheet"
 
 var defaultEntry = regexp.MustCompile(`<Default [^>]*(?:/>|></Default>)`)
 
@@ -174,22 +173,36 @@ func sortDefaults(part []byte) []byte {
 	})
 }
 
-// withCells is a sheet with its cells in it.
-func (w *file) withCells(name string, part []byte) ([]byte, error) {
-	no, err := strconv.Atoi(strings.TrimSuffix(strings.TrimPrefix(name, "xl/worksheets/sheet"), ".xml"))
-	if err != nil || no < 1 || no > len(w.grids) {
-		return nil, fmt.Errorf("no sheet is kept in it")
+// gridOfPart is the sheet that a part holds, nil where it holds none.
+func (w *file) gridOfPart(name string) *grid {
+	if !strings.HasPrefix(name, sheetParts) {
+		return nil
 	}
+	no, err := strconv.Atoi(strings.TrimSuffix(strings.TrimPrefix(name, sheetParts), ".xml"))
+	if err != nil || no < 1 || no > len(w.grids) {
+		return nil
+	}
+	return w.grids[no-1]
+}
+
+// withCells writes a sheet with its cells in it, and lets go of them: a large
+// workbook would not fit twice.
+func (w *file) withCells(name string, part []byte, to io.Writer) error {
+	g := w.gridOfPart(name)
+	if g == nil {
+		return fmt.Errorf("no sheet is kept in it")
+	}
+	part = bytes.ReplaceAll(part, []byte("<colBreaks></colBreaks>"), nil) // an empty list
 	before, after, ok := bytes.Cut(part, []byte("<sheetData></sheetData>"))
 	if !ok {
-		return nil, fmt.Errorf("there is no place for the cells")
+		return fmt.Errorf("there is no place for the cells")
 	}
-	g := w.grids[no-1]
-	out := append(append(w.room[:0], before...), "<sheetData>"...)
-	if out, err = w.appendCells(out, g); err != nil {
-		return nil, err
+	w.room = append(append(w.room[:0], before...), "<sheetData>"...)
+	if err := w.writeCells(to, g); err != nil {
+		return err
 	}
-	g.rows = nil // written: a large workbook would not fit twice
-	w.room = append(append(out, "</sheetData>"...), after...)
-	return w.room, nil
+	g.rows = nil
+	w.room = append(append(w.room, "</sheetData>"...), after...)
+	_, err := to.Write(w.room)
+	return err
 }
