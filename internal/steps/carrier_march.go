@@ -103,6 +103,7 @@ func (r *refluxing) advance(flows flow, first *state, h float64) (next, slope st
 			for j := range i {
 				next.collect(h*stageWeights[i][j], &k[j])
 			}
+			next.dropGone()
 			next.settle(&r.s, first)
 		}
 		if k[i], c, err = flows(&next); err != nil {
@@ -184,6 +185,17 @@ func (s *state) collect(h float64, d *state) {
 	s.boiledKg += h * d.boiledKg
 	s.heatJ += h * d.heatJ
 	s.pushedM3 += h * d.pushedM3
+}
+
+// dropGone empties the pot of what is gone. A column would raise even such a trace
+// to a share of the head that counts, for ever, as it is not followed any more.
+func (s *state) dropGone() {
+	all := total(s.pot)
+	for i := range s.pot {
+		if s.pot[i] < goneShare*all {
+			s.pot[i] = 0
+		}
+	}
 }
 
 // settle puts what the rounding of the step left over where the flow goes, so

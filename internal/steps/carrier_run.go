@@ -136,6 +136,13 @@ func scaled(n Fractions, by float64) Fractions {
 	return n
 }
 
+func sum(a, b Fractions) Fractions {
+	for i := range a {
+		a[i] += b[i]
+	}
+	return a
+}
+
 func (r *refluxing) massKg(n Fractions) float64 {
 	return n[0]*r.m.Pure[0].MolarMassKgPerMol + n[1]*r.m.Pure[1].MolarMassKgPerMol + n[2]*r.m.Pure[2].MolarMassKgPerMol
 }

@@ -251,7 +251,7 @@ func TestCarrierBalances(t *testing.T) {
 		closes(rt, "carrier", b.CarrierAddedKg, b.CarrierOutKg+b.CarrierRemovedKg)
 		closes(rt, "heat", b.HeatInJ, b.HeatUsedJ)
 		last := o.Course[len(o.Course)-1]
-		if !(o.Out.SolventKg > 0 && o.Out.WaterKg > 0 && o.Out.CarrierKg > 0 && o.HoursTotal > 0 && last.PotK > 300) {
+		if !(o.Out.SolventKg > 0 && o.Out.WaterKg > 0 && o.Out.CarrierKg >= 0 && o.HoursTotal > 0 && last.PotK > 300) {
 			rt.Fatalf("out %+v after %g h, pot at %g K", o.Out, o.HoursTotal, last.PotK)
 		}
 		for _, l := range o.Losses {
@@ -281,7 +281,7 @@ func TestCarrierAtTheEdgeOfTwoLayers(t *testing.T) {
 		{"ethanol", "cyclohexane", 10, 0.02581100663500964, 3.9673298556663212, 0.05, 1, true, 0.2180391346118995, 3, "do not settle"},
 		{"ethanol", "cyclohexane", 10, 0.029980716999603557, 1.9263801574707031, 0.088140545377330293, 0, true, 0.047931754837653016, 2, "do not settle"},
 		{"n-n-dimethylformamide", "toluene", 10, 0.16835916284868391, 3.9444505438068518, 0.066423043259419501, 0, true, 0.048978615089054885, 3, "do not settle"},
-		{"n-n-dimethylformamide", "toluene", 25, 0.29999999999999999, 9.0727877616882324, 1, 0, false, 0.080079801577085163, 3, "hardly anything but aqueous layer"},
+		{"n-n-dimethylformamide", "toluene", 25, 0.29999999999999999, 9.0727877616882324, 1, 0, false, 0.080079801577085163, 3, "hardly any second layer"},
 		{"n-n-dimethylformamide", "toluene", 25, 0.014814076666171789, 6.9420175738632679, 0.15380859375, 1, false, 0.042140581941566779, 1, "hardly any second layer"},
 	} {
 		eq := carrierEquilibrium(t, c.solvent, c.carrier, c.receiverC)
@@ -304,27 +304,41 @@ func TestCarrierAtTheEdgeOfTwoLayers(t *testing.T) {
 	}
 }
 
-// Ten times finer steps change the result by less than 0.5 %.
+// Finer steps change the result by less than 0.5 %. In the last two a trace of water
+// that was no longer followed once ruled the head of the column, and a false layer of
+// two thirds toluene stayed on.
 func TestCarrierStepControl(t *testing.T) {
-	for _, k := range [][2]string{{"ethanol", "cyclohexane"}, {"2-propanol", "cyclohexane"}, {"n-n-dimethylformamide", "toluene"}, {"acetonitrile", "benzene"}} {
-		eq := carrierEquilibrium(t, k[0], k[1], 20)
-		feed := carrierLot(eq, 10, 0.05)
-		plan := withColumn(feed, 0.3, 3)
+	for _, c := range []struct {
+		solvent, carrier  string
+		water, dose, goal float64
+		stages            int
+	}{
+		{"ethanol", "cyclohexane", 0.05, 0.3, 500e-6, 3},
+		{"2-propanol", "cyclohexane", 0.05, 0.3, 500e-6, 3},
+		{"n-n-dimethylformamide", "toluene", 0.05, 0.3, 500e-6, 3},
+		{"acetonitrile", "benzene", 0.05, 0.3, 500e-6, 3},
+		{"n-n-dimethylformamide", "toluene", 0.045, 1, 0.0315, 5},
+		{"n-n-dimethylformamide", "toluene", 0.00225, 0.1, 852e-6, 2},
+	} {
+		eq := carrierEquilibrium(t, c.solvent, c.carrier, 20)
+		feed := carrierLot(eq, 10, c.water)
+		plan := withColumn(feed, c.dose, c.stages)
+		plan.Goal = c.goal
 		a, errA := steps.RunCarrier(eq, feed, plan, rig("either"), rules)
-		plan.StepError = 1e-5
+		plan.StepError = 5e-6
 		b, errB := steps.RunCarrier(eq, feed, plan, rig("either"), rules)
 		if errA != nil || errB != nil {
-			t.Errorf("%v: %v, %v", k, errA, errB)
+			t.Errorf("%+v: %v, %v", c, errA, errB)
 			continue
 		}
 		if a.Why != b.Why {
-			t.Errorf("%v: %s against %s", k, a.WhyText, b.WhyText)
+			t.Errorf("%+v: %s against %s", c, a.WhyText, b.WhyText)
 		}
-		near(t, k[0]+": product", a.Out.SolventKg, b.Out.SolventKg, 0.005)
-		near(t, k[0]+": carrier left", a.Out.CarrierKg, b.Out.CarrierKg, 0.005)
-		near(t, k[0]+": carrier lost", a.CarrierLostKg, b.CarrierLostKg, 0.005)
-		near(t, k[0]+": water at the stop of the trap", a.Figure("water in the pot when the trap stops"), b.Figure("water in the pot when the trap stops"), 0.005)
-		near(t, k[0]+": hours", a.HoursTotal, b.HoursTotal, 0.005)
+		near(t, c.solvent+": product", a.Out.SolventKg, b.Out.SolventKg, 0.005)
+		near(t, c.solvent+": carrier left", a.Out.CarrierKg, b.Out.CarrierKg, 0.005)
+		near(t, c.solvent+": carrier lost", a.CarrierLostKg, b.CarrierLostKg, 0.005)
+		near(t, c.solvent+": water at the stop of the trap", a.Figure("water in the pot when the trap stops"), b.Figure("water in the pot when the trap stops"), 0.005)
+		near(t, c.solvent+": hours", a.HoursTotal, b.HoursTotal, 0.005)
 	}
 }
 

@@ -37,15 +37,15 @@ const slowestRemoval = 0.05
 
 // reflux runs the steady return until the goal is reached or the trap can do no more.
 func (r *refluxing) reflux() error {
-	if err := r.firstLayers(); err != nil {
-		return err
-	}
 	goal := math.Max(r.plan.Goal, r.rules.LowestOutlet)
 	r.why = AtTarget
 	if goal > r.plan.Goal {
 		r.why = AtPractice
 	}
 	r.goal, r.trapFromJ, r.trapFromKg = goal, r.s.heatJ, r.massKg(r.s.pot)
+	if err := r.firstLayers(); err != nil {
+		return err
+	}
 	first, err := r.condense(&r.s)
 	if err != nil || r.dryness(&r.s) <= goal {
 		return err
@@ -201,9 +201,13 @@ func (r *refluxing) watch(s *state, c *condensed) {
 	}
 }
 
-// firstLayers checks that the condensate splits, and the return fits.
+// firstLayers checks that the condensate splits, or what the receiver holds where that
+// took all the water, and that the return fits.
 func (r *refluxing) firstLayers() error {
 	c, err := r.condense(&r.s)
+	if err == nil && r.dryness(&r.s) <= r.goal {
+		c.split, err = r.part(sum(r.s.held, r.s.aqueous))
+	}
 	if err != nil {
 		return err
 	}
