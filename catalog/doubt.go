@@ -30,6 +30,20 @@ var doubtKeys = []string{
 	DoubtSalt, DoubtReactive, DoubtCarrier, DoubtQuoted, DoubtYear, DoubtListed, DoubtReading,
 }
 
+// PairDoubt is the key of the factor for a water pair of a quality; D where it is none
+// of A, B and C.
+func PairDoubt(quality string) string {
+	switch quality {
+	case "A":
+		return DoubtPairA
+	case "B":
+		return DoubtPairB
+	case "C":
+		return DoubtPairC
+	}
+	return DoubtPairD
+}
+
 // Bounds of a factor of doubt: one within rounding of 1 has no spread.
 const leastDoubt, mostDoubt = 1.001, 100
 

@@ -46,11 +46,7 @@ func (l *Lot) pair() spread.Input {
 	if band := s.Water.SolubilityBand; band > 1.001 {
 		return spread.Factor(name, band, fmt.Sprintf("scatter of the published solubility, a factor of %.3g either way", band))
 	}
-	key := map[string]string{"A": catalog.DoubtPairA, "B": catalog.DoubtPairB, "C": catalog.DoubtPairC}[s.Water.Quality]
-	if key == "" {
-		key = catalog.DoubtPairD
-	}
-	in := l.factor(key, name)
+	in := l.factor(catalog.PairDoubt(s.Water.Quality), name)
 	in.Why = fmt.Sprintf("model of quality %s, %s", s.Water.Quality, in.Why)
 	return in
 }

@@ -119,6 +119,9 @@ func (c *Case) newCarrier(key string) (*steps.CarrierEquilibrium, error) {
 		organic = &l.OrganicLayer
 	}
 	doubt := steps.CarrierDoubt{AlcoholInHydrocarbon: slices.Contains(alcohols, c.Solvent.Class)}
+	for _, s := range []*catalog.Solvent{c.Solvent, c.Catalog.Solvents[key]} {
+		doubt.PairsFactor = math.Max(doubt.PairsFactor, c.Catalog.Doubts[catalog.PairDoubt(s.Water.Quality)].SI)
+	}
 	if set := c.Catalog.Ternaries[pair]; set != nil {
 		doubt.FittedFactor = set.Band
 	}

@@ -34,6 +34,7 @@ type CarrierEquilibrium struct {
 type CarrierDoubt struct {
 	AlcoholInHydrocarbon bool    // the pairs alone give a factor 2 to 18 too little
 	FittedFactor         float64 // of a set fitted to tie-lines of the three; 0 where there is none
+	PairsFactor          float64 // of the poorer of both water pairs, where the pairs alone serve; 0: not known
 }
 
 // Bands on the water of the organic layer where an alcohol and a hydrocarbon are
@@ -55,7 +56,7 @@ func (eq *CarrierEquilibrium) Band(w thermo.Fractions) (factor float64, basis st
 	case eq.Doubt.FittedFactor > 0:
 		return math.Max(1, eq.Doubt.FittedFactor), "a set fitted to tie-lines of the three"
 	case !eq.Doubt.AlcoholInHydrocarbon:
-		return 1, "the three pairs"
+		return math.Max(1, eq.Doubt.PairsFactor), "the three pairs, as no figures for the three together are known"
 	case r < diluteAlcohol:
 		return diluteBand, "the three pairs, with little alcohol in the layer"
 	}

@@ -121,7 +121,7 @@ func (r *refluxing) figures(o *Outcome, heatUpS, refluxS, stripS, drainings floa
 
 func (r *refluxing) warn(o *Outcome) {
 	if r.widestBand > 1 {
-		o.Warnings = append(o.Warnings, fmt.Sprintf("water in the organic layer rests on %s: within a factor %.2g either way", r.bandBasis, r.widestBand))
+		o.Warnings = append(o.Warnings, fmt.Sprintf("water in the organic layer rests on %s: within a factor %.3g either way", r.bandBasis, r.widestBand))
 	}
 	if r.half == trapOnly {
 		return

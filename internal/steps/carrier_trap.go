@@ -226,6 +226,7 @@ func (r *refluxing) firstLayers() error {
 		return fmt.Errorf("%w: without the carrier the aqueous layer holds %.3g %% water, the pot %.3g %%: the solvent would leave first",
 			ErrNoCarrier, 100*layer, 100*pot)
 	}
+	r.watch(&r.s, &c)
 	return nil
 }
 
