@@ -21,7 +21,11 @@ func (p *page) watch(a *bench.Answer) {
 	if a.Carrier != "" {
 		columns = append(columns, column{"Carrier\n%", true, 0}, column{"Drawn off\nmL", true, 0})
 	}
-	columns = append(columns, column{"Solvent lost\n%", true, 0})
+	if a.Overhead { // what is not distilled over yet
+		columns = append(columns, column{"Still in pot\n%", true, 0})
+	} else {
+		columns = append(columns, column{"Solvent lost\n%", true, 0})
+	}
 	p.heading("To watch, in each charge:")
 	var rows [][]string
 	for _, pt := range a.Watch(watched) {
@@ -29,13 +33,21 @@ func (p *page) watch(a *bench.Answer) {
 		if a.Kind == steps.Forerun {
 			collected = pt.DrawnM3
 		}
-		row := []string{quantity.Significant(pt.Hours, 3), kelvins(pt.PotK), kelvins(pt.HeadK), quantity.Significant(collected*1e6, 3), traceOf(pt.Water)}
+		row := []string{quantity.Significant(pt.Hours, 3), kelvins(pt.PotK), kelvins(pt.HeadK), drawn(collected), traceOf(pt.Water)}
 		if a.Carrier != "" {
-			row = append(row, quantity.Significant(100*pt.Carrier, 3), quantity.Significant(pt.DrawnM3*1e6, 3))
+			row = append(row, quantity.Significant(100*pt.Carrier, 3), drawn(pt.DrawnM3))
 		}
 		rows = append(rows, append(row, quantity.Significant(100*pt.LostShare, 3)))
 	}
 	p.table(columns, rows)
+}
+
+// drawn is a volume in mL; what is far below a drop is none.
+func drawn(m3 float64) string {
+	if m3 < 1e-10 {
+		return "0"
+	}
+	return quantity.Significant(m3*1e6, 3)
 }
 
 // traceOf is a water content; where a carrier is stripped it falls to nothing.

@@ -21,8 +21,15 @@ func (c *Case) runForerun(lot steps.Lot, goal float64, choice choice) (steps.Out
 	}
 	rig, rules := c.forerunRig(choice.stages), c.forerunRules(choice)
 	o, err := steps.RunForerun(eq, lot, goal, rig, rules)
+	miss := c.missBelowAtmosphere(eq.PressurePa)
+	if err != nil && miss != "" {
+		return o, fmt.Errorf("%w; %s", err, miss)
+	}
 	if err != nil {
 		return o, err
+	}
+	if miss != "" {
+		o.Warnings = append(o.Warnings, miss)
 	}
 	if choice.kPa > 0 {
 		o.Warnings = append(o.Warnings, fmt.Sprintf("drawn over at %.3g kPa: low enough for the pot, and what distils over condenses at %.3g K or more over the cooling water (common practice)",
@@ -35,6 +42,16 @@ func (c *Case) runForerun(lot steps.Lot, goal float64, choice choice) (steps.Out
 		return o, wasteful{lost, fmt.Errorf("a forerun over %d stages would take %.0f %% of the lot with it", choice.stages, 100*lost)}
 	}
 	return o, nil
+}
+
+// missBelowAtmosphere tells where the pair's model is known to be off, at pressures far
+// below the one atmosphere that azeotropes are fitted at; "" elsewhere.
+func (c *Case) missBelowAtmosphere(pressurePa float64) string {
+	const farBelowPa = 50e3
+	if c.Solvent.Water.KnownMiss == "" || pressurePa > farBelowPa {
+		return ""
+	}
+	return "known miss of the model of water in " + c.Solvent.Name + ": " + c.Solvent.Water.KnownMiss
 }
 
 func (c *Case) forerunRig(stages int) steps.ForerunRig {

@@ -45,6 +45,7 @@ func (r *refluxing) outcome(feed Lot) Outcome {
 	o.Balance.HeatInJ = n * r.netW() * hotS
 	o.Balance.HeatUsedJ = n * (r.heatUpJ + r.s.heatJ + r.netW()*(refluxS-trapS))
 	r.figures(&o, heatUpS, refluxS, stripS, drainings)
+	o.Warnings = append(o.Warnings, oftenDrained(drainings, "take a larger receiver")...)
 	r.warn(&o)
 	return o
 }

@@ -68,7 +68,19 @@ func (b *boiling) outcome(feed Lot, goal float64, why Stop) Outcome {
 		{holdsOfWater, "mL", b.rig.UsableVolumeM3 * 1e6},
 		{"floor of the pot", "mg/kg", b.eq.Floor.Water * mgPerKg},
 	}
+	o.Warnings = append(o.Warnings, oftenDrained(drainings, "let free water settle first, or take a larger receiver")...)
 	return o
+}
+
+// mostDrainings of one charge before a larger receiver is worth a thought (common
+// practice, no source).
+const mostDrainings = 12
+
+func oftenDrained(drainings float64, advice string) []string {
+	if drainings <= mostDrainings {
+		return nil
+	}
+	return []string{fmt.Sprintf("the receiver is drained %.0f times in a charge: %s", drainings, advice)}
 }
 
 // waterOut is the water in the product. Filling the receiver can take a small
