@@ -1,6 +1,7 @@
 package routes
 
 import (
+	"errors"
 	"fmt"
 	"math"
 
@@ -50,6 +51,13 @@ func (c *Case) singleCarrier(a Asked, s *Single) error {
 	} else {
 		s.Outcome, err = steps.ChooseCarrierDose(eq, c.Feed, plan, rigFor, rules)
 		plan.DoseKg = s.CarrierKg
+	}
+	if errors.Is(err, steps.ErrNoCarrier) && a.Stages == 0 {
+		for _, taller := range c.ColumnStages() {
+			if a.Stages = taller; taller > 0 && c.singleCarrier(a, &Single{}) == nil {
+				return fmt.Errorf("%w; over a column of %d stages it works: --stages %d", err, taller, taller)
+			}
+		}
 	}
 	if err != nil {
 		return err
