@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"math"
 
+	"parch/internal/memo"
 	"parch/internal/quantity"
 	"parch/internal/thermo"
 )
@@ -56,6 +57,21 @@ type ForerunEquilibrium struct {
 	PressurePa float64
 	Azeotrope  thermo.Azeotrope
 	DryK       float64 // boiling point of the dry solvent
+
+	climbed memo.Map[foot, climb] // a search draws the same lot off to many goals
+}
+
+// foot is where a climb begins.
+type foot struct {
+	x      float64
+	stages int
+	guessK float64
+}
+
+// climb is the vapour of a pot and of the head of the column above it.
+type climb struct {
+	pot, head thermo.Vapour
+	err       error
 }
 
 // NewForerunEquilibrium solves for the azeotrope, or says why the model does not apply.
@@ -71,7 +87,7 @@ func NewForerunEquilibrium(m *thermo.Mixture, pressurePa float64) (*ForerunEquil
 	if err != nil {
 		return nil, err
 	}
-	return &ForerunEquilibrium{m, pressurePa, az, dryK}, nil
+	return &ForerunEquilibrium{Mixture: m, PressurePa: pressurePa, Azeotrope: az, DryK: dryK}, nil
 }
 
 // vapour over a liquid of overall water fraction x, as one liquid or two.
@@ -91,6 +107,14 @@ func (eq *ForerunEquilibrium) vapour(x, guessK float64) (thermo.Vapour, error) {
 // A finite reflux ratio parts less sharply, so the result is the best a column of
 // so many stages can do.
 func (eq *ForerunEquilibrium) climb(x float64, stages int, guessK float64) (pot, head thermo.Vapour, err error) {
+	c := eq.climbed.Of(foot{x, stages, guessK}, func() (c climb) {
+		c.pot, c.head, c.err = eq.climbOnce(x, stages, guessK)
+		return c
+	})
+	return c.pot, c.head, c.err
+}
+
+func (eq *ForerunEquilibrium) climbOnce(x float64, stages int, guessK float64) (pot, head thermo.Vapour, err error) {
 	if pot, err = eq.vapour(x, guessK); err != nil {
 		return pot, pot, err
 	}
