@@ -130,6 +130,9 @@ func (s *shelf) err() error {
 	return errors.Join(all...)
 }
 
+// solventFile is the file of a solvent of the catalog itself.
+func solventFile(key string) string { return "solvents/" + key + ".yaml" }
+
 // root is the top of a file of the catalog itself, nil where it could not be read.
 func (s *shelf) root(name string) *document.Node {
 	for _, f := range s.files {

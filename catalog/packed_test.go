@@ -9,20 +9,26 @@ import (
 	"parch/catalog"
 )
 
-var update = flag.Bool("update", false, "write packed.bin anew")
+var update = flag.Bool("update", false, "write packed.bin and names.txt anew")
 
 func TestPackedIsOfTheFilesBesideIt(t *testing.T) {
 	want, err := catalog.Packed(catalog.BuiltIn())
 	if err != nil {
 		t.Fatal(err)
 	}
-	if *update {
-		if err := os.WriteFile("packed.bin", want, 0o644); err != nil {
-			t.Fatal(err)
-		}
-		return
+	cat, err := catalog.Parse(catalog.BuiltIn())
+	if err != nil {
+		t.Fatal(err)
 	}
-	if got, err := os.ReadFile("packed.bin"); err != nil || !bytes.Equal(got, want) {
-		t.Errorf("a file of the catalog has changed since packed.bin was written (%v); run: go test ./catalog -run Packed -update", err)
+	for name, want := range map[string][]byte{"packed.bin": want, "names.txt": catalog.Names(cat)} {
+		if *update {
+			if err := os.WriteFile(name, want, 0o644); err != nil {
+				t.Fatal(err)
+			}
+			continue
+		}
+		if got, err := os.ReadFile(name); err != nil || !bytes.Equal(got, want) {
+			t.Errorf("a file of the catalog has changed since %s was written (%v); run: go test ./catalog -run Packed -update", name, err)
+		}
 	}
 }

@@ -40,6 +40,9 @@ func (r *reader) carrier() {
 	carriers := slices.Sorted(maps.Keys(r.cat.Carriers))
 	for _, key := range carriers {
 		s := r.cat.Solvents[key]
+		if s == nil {
+			continue // not read for this question
+		}
 		for _, word := range slices.Concat([]string{s.Key, s.Name}, s.Aliases) {
 			if strings.EqualFold(word, strings.TrimSpace(typed)) {
 				r.q.Carrier = s

@@ -57,7 +57,7 @@ func (p *program) runStep(c *cli.Context) error {
 	if err != nil {
 		return err
 	}
-	cat, err := p.loadCatalog(c)
+	cat, err := p.catalogForStep(c)
 	if err != nil {
 		return err
 	}
@@ -78,6 +78,21 @@ func (p *program) runStep(c *cli.Context) error {
 		return refusedStep(cat, err)
 	}
 	return p.showStep(c, answer)
+}
+
+// catalogForStep is no more of the built-in catalog than one step asks for, where
+// that is enough.
+func (p *program) catalogForStep(c *cli.Context) (*catalog.Catalog, error) {
+	if len(c.StringSlice("catalog")) == 0 && c.IsSet("solvent") {
+		names := []string{c.String("solvent")}
+		if c.IsSet("carrier") {
+			names = append(names, c.String("carrier"))
+		}
+		if cat, ok := catalog.LoadFor(names...); ok {
+			return cat, nil
+		}
+	}
+	return p.loadCatalog(c)
 }
 
 // flagsOfStep are the flags that were given, by name.
