@@ -95,7 +95,7 @@ func (s *shelf) solvent(root *document.Node, f document.Fields) *Solvent {
 // finish fills in what follows from an entry and checks it.
 func (s *shelf) finish(root *document.Node, f document.Fields, v *Solvent) {
 	v.Pure = thermo.Pure{
-		Key: v.Key, MolarMassKgPerMol: v.MolarMass.SI, MeltingK: v.MeltingPoint.SI, CriticalK: v.CriticalTemperature.SI,
+		Key: v.Key, Name: v.Name, MolarMassKgPerMol: v.MolarMass.SI, MeltingK: v.MeltingPoint.SI, CriticalK: v.CriticalTemperature.SI,
 		VapourPressurePa: v.VapourPressure.Correlation, HeatOfVaporizationJ: v.HeatOfVaporization.Correlation,
 		HeatCapacityJPerMolK: v.HeatCapacity.Correlation, DensityKgPerM3: v.Density.Correlation, ViscosityPaS: v.Viscosity.Correlation,
 	}

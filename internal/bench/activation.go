@@ -108,7 +108,7 @@ func leadingTemperature(text string) (tK float64, rest []string, err error) {
 
 // aftercare reads what was done with a sieve after the oven, each of it once.
 func aftercare(words []string) (a steps.Activation, err error) {
-	rest := strings.ToLower(strings.Join(words, " "))
+	rest := strings.Join(words, " ")
 	seen := map[string]bool{}
 	for rest != "" {
 		what, after, err := oneCare(rest, &a)
@@ -132,28 +132,44 @@ func aftercare(words []string) (a steps.Activation, err error) {
 // oneCare takes one thing that was done off the beginning of the text.
 func oneCare(text string, a *steps.Activation) (what, rest string, err error) {
 	for _, phrase := range []string{"closed hot", "closed while hot"} {
-		if after, ok := strings.CutPrefix(text, phrase); ok {
+		if after, ok := cutPhrase(text, phrase); ok {
 			a.ClosedHot = true
-			return "closed hot", strings.TrimSpace(after), nil
+			return "closed hot", after, nil
 		}
 	}
-	if after, ok := strings.CutPrefix(text, "left open"); ok {
+	if after, ok := cutPhrase(text, "left open"); ok {
 		a.LeftOpen = true
-		return "left open", strings.TrimSpace(after), nil
+		return "left open", after, nil
 	}
-	if after, ok := strings.CutPrefix(text, "vacuum "); ok {
+	if after, ok := cutPhrase(text, "vacuum"); ok {
 		a.VacuumPa, rest, err = leading(after, quantity.Pressure)
-		if err == nil && a.VacuumPa <= 0 {
-			err = fmt.Errorf("a vacuum of %s is not possible; write what its gauge reads, like \"vacuum 1 hPa\"", strings.TrimSpace(after))
+		switch {
+		case err != nil:
+			err = fmt.Errorf("a vacuum of what? write what its gauge reads, like \"vacuum 1 hPa\"")
+		case a.VacuumPa <= 0:
+			err = fmt.Errorf("a vacuum of %s is not possible; write what its gauge reads, like \"vacuum 1 hPa\"", after)
 		}
 		return "the vacuum", rest, err
 	}
-	seconds, rest, err := leading(text, quantity.Time)
+	since := text
+	if after, ok := cutPhrase(text, "for"); ok {
+		since = after
+	}
+	seconds, rest, err := leading(since, quantity.Time)
 	if err != nil {
 		return "", text, fmt.Errorf("%s is not understood", quantity.Quote(text))
 	}
 	a.Days = seconds / 86400
 	return "the time since", rest, nil
+}
+
+// cutPhrase takes a phrase off the beginning of a text; case does not count.
+func cutPhrase(text, phrase string) (after string, ok bool) {
+	if len(text) < len(phrase) || !strings.EqualFold(text[:len(phrase)], phrase) {
+		return text, false
+	}
+	after = text[len(phrase):]
+	return strings.TrimSpace(after), after == "" || after[0] == ' '
 }
 
 // leading takes a quantity of one or two words off the beginning of a text.
@@ -171,12 +187,13 @@ func leading(text string, d quantity.Dimension) (si float64, rest string, err er
 	return 0, text, err
 }
 
-// unitCase undoes the lower case of a unit.
+// unitCase writes a unit as it is written, whatever its case was.
 func unitCase(words []string, d quantity.Dimension) string {
 	text := strings.Join(words, " ")
 	for _, unit := range quantity.Units(d) {
-		if before, ok := strings.CutSuffix(text, strings.ToLower(unit)); ok && !strings.ContainsAny(before, "abcdefghijklmnopqrstuvwxyz") {
-			return before + unit
+		number := strings.TrimRight(text, "abcdefghijklmnopqrstuvwxyzABCDEFGHIJKLMNOPQRSTUVWXYZ")
+		if strings.EqualFold(text[len(number):], unit) {
+			return number + unit
 		}
 	}
 	return text
@@ -228,6 +245,9 @@ func (r *reader) computed(text string, ovenK float64, kept steps.Activation) {
 	if err != nil {
 		r.mistake(fmt.Sprintf("--activated: %s: %s", quantity.Quote(text), err), "")
 		return
+	}
+	if kept.Days > 0 {
+		r.q.Notes = append(r.q.Notes, fmt.Sprintf("--activated: %s read as the time since the oven, not the time in it", quantity.Format(kept.Days*86400, quantity.Time, map[bool]string{true: "d", false: "h"}[kept.Days >= 1], 3)))
 	}
 	a := Activation{
 		Text: text, OvenK: ovenK, KgPerKg: left.KgPerKg, Low: left.Low, High: left.High, Note: strings.Join(left.Notes, "; "),

@@ -54,6 +54,9 @@ func Ask(c *catalog.Catalog, q *Question) (*Answer, error) {
 	if a.Single, err = k.Single(a.asked()); err != nil {
 		return nil, explained(k, q, err)
 	}
+	if wetter := a.wetter(); wetter != nil {
+		return nil, wetter
+	}
 	var ofLot []string
 	a.Cautions, ofLot = study.Remarks(k, routes.Route{stage})
 	a.advise()
@@ -129,6 +132,24 @@ func forbidden(q *Question, v catalog.Verdict, known bool) error {
 	r := &Refusal{Reason: fmt.Sprintf("%s is %s: %s", pair, v.Word, v.Reason), Hint: "there is no way to override this", Source: v.Source, Confidence: v.Confidence}
 	if v.Word == "unsuitable" {
 		r.Hint = fmt.Sprintf(`where it is wanted all the same, a job file names it: accept: {unsuitable: [%s]}`, q.Agent.Key)
+	}
+	return r
+}
+
+// wetter refuses a soak of a solvent that makes more water on the sorbent than that
+// takes up.
+func (a *Answer) wetter() error {
+	in, out := a.In.Water(), a.Out.Water()
+	if out <= in || !(a.Figure("water made by condensation") > 0) {
+		return nil
+	}
+	r := &Refusal{
+		Reason: fmt.Sprintf("%s condenses on %s and makes more water than that takes up: %s go in, %s would come out after %s h", a.Question.Solvent.Name, a.Question.Sorbent(),
+			quantity.FormatWater(in), quantity.FormatWater(out), quantity.Significant(a.Course[len(a.Course)-1].Hours, 3)),
+		Hint: "over this dose no time leaves less than went in; a trap, a salt or a dry grade may",
+	}
+	if best := a.Figure("driest after"); best > 0 {
+		r.Hint = fmt.Sprintf("it is driest after %s h: ask for that time, and decant then", quantity.Significant(best, 2))
 	}
 	return r
 }

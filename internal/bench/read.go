@@ -8,6 +8,7 @@ import (
 	"strings"
 
 	"parch/catalog"
+	"parch/internal/mixture"
 	"parch/internal/quantity"
 	"parch/internal/steps"
 )
@@ -153,10 +154,11 @@ func (r *reader) time() float64 {
 	if !ok {
 		return math.NaN()
 	}
+	withUnit := text
 	if _, err := quantity.Parse(text, quantity.Number); err == nil {
-		text += " h"
+		withUnit += " h"
 	}
-	reading, err := quantity.Parse(text, quantity.Time)
+	reading, err := quantity.Parse(withUnit, quantity.Time)
 	return r.within("hours", text, reading, err, anyTime, math.NaN())
 }
 
@@ -177,6 +179,9 @@ func (r *reader) content(flag string, l limits) float64 {
 	if !ok {
 		return math.NaN()
 	}
+	if flag == "water" && strings.EqualFold(strings.TrimSpace(text), "saturated") {
+		return r.saturated()
+	}
 	var reading quantity.Reading
 	var err error
 	for range 4 { // the density changes little with the water: it settles at once
@@ -188,7 +193,27 @@ func (r *reader) content(flag string, l limits) float64 {
 			break
 		}
 	}
+	if err != nil && !given(r.q.ReagentMol) && strings.Contains(strings.ReplaceAll(text, " ", ""), "mol%") {
+		r.mistake(fmt.Sprintf("--%s: %s", flag, err), `the reagent of the whole lot is given with --reagent "0.5 mol", the lot with --volume "10 L"`)
+		return math.NaN()
+	}
 	return r.within(flag, text, reading, err, l, math.NaN())
+}
+
+// saturated is what the solvent dissolves at the temperature of the lot.
+func (r *reader) saturated() float64 {
+	at := quantity.FormatTemperature(r.q.TempK)
+	water, partly, err := mixture.Pair(r.cat, r.q.Solvent).Solubility(r.q.TempK)
+	switch {
+	case err != nil:
+		r.mistake(fmt.Sprintf("--water: how much water %s holds at %s is not known (%v); give its content", r.q.Solvent.Name, at, err), "")
+	case !partly:
+		r.mistake(fmt.Sprintf("--water: %s takes up any amount of water at %s and is never saturated; give its content", r.q.Solvent.Name, at), "")
+	default:
+		r.q.Notes = append(r.q.Notes, fmt.Sprintf("--water: saturated read as %s, what %s holds at %s", quantity.FormatWater(water), r.q.Solvent.Name, at))
+		return water
+	}
+	return math.NaN()
 }
 
 func orZero(x float64) float64 {

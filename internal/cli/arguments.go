@@ -13,7 +13,7 @@ import (
 
 // flagsFirst moves the flags of a command before its other arguments, so that
 // they may stand on either side, and refuses a flag that is given twice where it
-// holds one value.
+// holds one value. A call for help asks for nothing else.
 // Everything after "--" is an argument.
 func flagsFirst(app *cli.App, args []string) ([]string, error) {
 	if len(args) == 0 || strings.HasPrefix(args[0], "-") {
@@ -47,6 +47,9 @@ func flagsFirst(app *cli.App, args []string) ([]string, error) {
 			}
 			flags = append(flags, args[i])
 		}
+	}
+	if seen["help"] || seen["h"] {
+		return []string{args[0], "--help"}, nil
 	}
 	return slices.Concat(args[:1], flags, []string{"--"}, rest), nil
 }

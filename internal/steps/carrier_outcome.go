@@ -127,7 +127,7 @@ func (r *refluxing) warn(o *Outcome) {
 	if r.half == trapOnly {
 		return
 	}
-	o.Warnings = append(o.Warnings, fmt.Sprintf("the product holds %s of %s", quantity.FormatWater(o.Out.Carrier()), r.m.Pure[inCarrier].Key))
+	o.Warnings = append(o.Warnings, fmt.Sprintf("the product holds %s of %s", quantity.FormatWater(o.Out.Carrier()), r.m.Pure[inCarrier].Called()))
 	if r.stripWhy == AtHeel {
 		o.Warnings = append(o.Warnings, r.stripped())
 	}

@@ -161,7 +161,7 @@ func (r *refluxing) ended(s *state, c *condensed) (stop Stop, text string) {
 	receiver := r.eq.ReceiverK - 273.15
 	l := r.m.Settle(c.split, r.eq.ReceiverK)
 	if s.pot[inCarrier]/total(s.pot) < leastCarrier*(1+1e-3) {
-		return AtCarrier, fmt.Sprintf("carrier used up: what is left of %s stands in the receiver, with %s in the pot; take more", r.m.Pure[inCarrier].Key, pot)
+		return AtCarrier, fmt.Sprintf("carrier used up: what is left of %s stands in the receiver, with %s in the pot; take more", r.m.Pure[inCarrier].Called(), pot)
 	}
 	if !c.split.Exists {
 		return AtOneLayer, fmt.Sprintf("no second layer: the condensate of a pot at %s is one liquid at %.0f °C", pot, receiver)

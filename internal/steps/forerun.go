@@ -266,7 +266,7 @@ func (d *drawing) choose() error {
 func (d *drawing) checkTemperatures() error {
 	kPa := d.eq.PressurePa / 1e3
 	if d.startK <= d.rig.RoomK {
-		return fmt.Errorf("%w: %s boils at %.1f °C at %.4g kPa, not above the room's %.1f °C", ErrNoForerun, d.m.Solvent.Key, d.startK-273.15, kPa, d.rig.RoomK-273.15)
+		return fmt.Errorf("%w: %s boils at %.1f °C at %.4g kPa, not above the room's %.1f °C", ErrNoForerun, d.m.Solvent.Called(), d.startK-273.15, kPa, d.rig.RoomK-273.15)
 	}
 	if err := d.checkCoolant(); err != nil {
 		return fmt.Errorf("%w: %w", ErrNoForerun, err)

@@ -99,7 +99,7 @@ func (a ReactiveAgent) residual(m *thermo.Mixture, feed Lot, found Measured, rig
 	r := residual{why: AtMeasured}
 	if found.Water > 0 {
 		r.water, r.low, r.high = found.Water, found.Water/orOne(found.Band), found.Water*orOne(found.Band)
-		r.text = fmt.Sprintf("measured: %s left %s in %s (%s)", a.Key, quantity.FormatWater(found.Water), m.Solvent.Key, found.Source)
+		r.text = fmt.Sprintf("measured: %s left %s in %s (%s)", a.Key, quantity.FormatWater(found.Water), m.Solvent.Called(), found.Source)
 	} else {
 		r.why = AtFloor
 		at := func(activity float64) float64 {
@@ -111,7 +111,7 @@ func (a ReactiveAgent) residual(m *thermo.Mixture, feed Lot, found Measured, rig
 		}
 		r.water, r.low, r.high = at(a.ClassActivity), at(a.ClassActivity/a.ClassBand), at(a.ClassActivity*a.ClassBand)
 		if math.IsNaN(r.low + r.water + r.high) {
-			return r, fmt.Errorf("%s in %s: no solution of that activity was found", a.Key, m.Solvent.Key)
+			return r, fmt.Errorf("%s in %s: no solution of that activity was found", a.Key, m.Solvent.Called())
 		}
 		r.text = fmt.Sprintf("class floor: no measurement for %s in %s; agents of its kind leave a water activity near %.2g, here %s, %s to %s",
 			a.Key, m.Solvent.Key, a.ClassActivity, quantity.FormatWater(r.water), quantity.FormatWater(r.low), quantity.FormatWater(r.high))

@@ -15,7 +15,7 @@ func RunReactive(m *thermo.Mixture, feed Lot, agent ReactiveAgent, found Measure
 }
 
 func runReactive(m *thermo.Mixture, feed Lot, agent ReactiveAgent, found Measured, rig ReactiveRig) (Outcome, error) {
-	if err := agent.check(feed, m.Solvent.Key, rig); err != nil {
+	if err := agent.check(feed, m.Solvent.Called(), rig); err != nil {
 		return Outcome{}, err
 	}
 	boilK, err := thermo.Boil(m.Solvent, rig.PressurePa)

@@ -30,10 +30,10 @@ func RunSettle(m *thermo.Mixture, feed Lot, tempK float64, rules SettleRules) (O
 	}
 	x := m.MoleFraction(feed.Water())
 	if x <= layers.XOrganic {
-		return Outcome{}, fmt.Errorf("%w: %s holds %s at %.1f °C", ErrNothingSettles, m.Solvent.Key, quantity.FormatWater(m.MassFraction(layers.XOrganic)), tempK-273.15)
+		return Outcome{}, fmt.Errorf("%w: %s holds %s at %.1f °C", ErrNothingSettles, m.Solvent.Called(), quantity.FormatWater(m.MassFraction(layers.XOrganic)), tempK-273.15)
 	}
 	if x >= layers.XAqueous {
-		return Outcome{}, fmt.Errorf("%w: the lot is water with dissolved %s", ErrNothingSettles, m.Solvent.Key)
+		return Outcome{}, fmt.Errorf("%w: the lot is water with dissolved %s", ErrNothingSettles, m.Solvent.Called())
 	}
 	total := feed.WaterKg/m.Water.MolarMassKgPerMol + feed.SolventKg/m.Solvent.MolarMassKgPerMol
 	aqueous := total * (x - layers.XOrganic) / (layers.XAqueous - layers.XOrganic)
@@ -49,7 +49,7 @@ func RunSettle(m *thermo.Mixture, feed Lot, tempK float64, rules SettleRules) (O
 		Out:           Lot{SolventKg: kept * (1 - saturated), WaterKg: kept * saturated, TempK: tempK},
 		Floor:         saturated,
 		Why:           AtFloor,
-		WhyText:       fmt.Sprintf("floor: %s saturated at %.1f °C holds %s", m.Solvent.Key, tempK-273.15, quantity.FormatWater(saturated)),
+		WhyText:       fmt.Sprintf("floor: %s saturated at %.1f °C holds %s", m.Solvent.Called(), tempK-273.15, quantity.FormatWater(saturated)),
 		HoursTotal:    (rules.TimeS + rules.AttendedS) / secondsPerHour,
 		HoursAttended: rules.AttendedS / secondsPerHour,
 		Losses: []Loss{

@@ -89,7 +89,7 @@ const MostLots = 12
 
 func (b *bath) checkLots() error {
 	if b.rig.CondensationPerS > 0 && b.rig.Lots > 1 {
-		return fmt.Errorf("%w: %s makes water on the sorbent: a charge is not used again as it is", ErrNoSense, b.m.Solvent.Key)
+		return fmt.Errorf("%w: %s makes water on the sorbent: a charge is not used again as it is", ErrNoSense, b.m.Solvent.Called())
 	}
 	return checkAmount("a number of lots over one charge", "", float64(b.rig.Lots), 0, MostLots)
 }

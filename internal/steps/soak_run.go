@@ -121,7 +121,7 @@ func (b *bath) reason(goal, out, floor, timeS float64, dose SoakDose) (Stop, str
 	case goal <= floor:
 		return AtFloor, fmt.Sprintf("floor: a sieve that still holds %.2g g/100 g leaves %s, whatever the dose", b.sorbent.ResidualKgPerKg*100, quantity.FormatWater(floor))
 	case b.rig.CondensationPerS > 0:
-		return AtPractice, fmt.Sprintf("%s makes water on the sorbent: no dose reaches %s in %.3g h", b.m.Solvent.Key, quantity.FormatWater(goal), hours)
+		return AtPractice, fmt.Sprintf("%s makes water on the sorbent: no dose reaches %s in %.3g h", b.m.Solvent.Called(), quantity.FormatWater(goal), hours)
 	}
 	eq, err := b.equilibrium(dose.Dose * b.volumeM3)
 	if err != nil || eq >= goal {

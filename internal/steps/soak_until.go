@@ -80,7 +80,7 @@ func (b *bath) reasonUntil(goal, floor, out, timeS, doseKgPerM3 float64, reached
 	case goal <= floor:
 		return AtFloor, fmt.Sprintf("floor: a sieve that still holds %.2g g/100 g leaves %s, whatever the dose and the time", b.sorbent.ResidualKgPerKg*100, quantity.FormatWater(floor))
 	case b.rig.CondensationPerS > 0:
-		return AtPractice, fmt.Sprintf("%s makes water on the sorbent: driest, at %s, after %.2g h", b.m.Solvent.Key, quantity.FormatWater(out), hours)
+		return AtPractice, fmt.Sprintf("%s makes water on the sorbent: driest, at %s, after %.2g h", b.m.Solvent.Called(), quantity.FormatWater(out), hours)
 	case timeS >= longestSoakS:
 		return AtTime, fmt.Sprintf("time: %s would take more than a year", g)
 	}

@@ -91,7 +91,7 @@ func (s *sorption) wetter() error {
 // which the solvent is not a liquid in an open vessel.
 func (s *sorption) check() error {
 	if s.sorbent.Unfit != "" {
-		return fmt.Errorf("%w: %s in %s: %s", ErrUnfit, s.sorbent.Key, s.m.Solvent.Key, s.sorbent.Unfit)
+		return fmt.Errorf("%w: %s in %s: %s", ErrUnfit, s.sorbent.Key, s.m.Solvent.Called(), s.sorbent.Unfit)
 	}
 	return checkLiquid(s.m.Solvent, s.tempK)
 }
@@ -102,9 +102,9 @@ const atmospherePa = 101325
 func checkLiquid(solvent *thermo.Pure, tempK float64) error {
 	switch {
 	case !(tempK > solvent.MeltingK):
-		return fmt.Errorf("%w: %s is not liquid at %.1f °C; it melts at %.1f °C", ErrNoSense, solvent.Key, tempK-273.15, solvent.MeltingK-273.15)
+		return fmt.Errorf("%w: %s is not liquid at %.1f °C; it melts at %.1f °C", ErrNoSense, solvent.Called(), tempK-273.15, solvent.MeltingK-273.15)
 	case !(solvent.VapourPressurePa.At(tempK) < atmospherePa):
-		return fmt.Errorf("%w: %s boils below %.1f °C at 1013 hPa", ErrNoSense, solvent.Key, tempK-273.15)
+		return fmt.Errorf("%w: %s boils below %.1f °C at 1013 hPa", ErrNoSense, solvent.Called(), tempK-273.15)
 	}
 	return nil
 }

@@ -84,7 +84,7 @@ const floorMargin = 1.05
 // condensate and nothing returns.
 func RunTrap(eq *TrapEquilibrium, feed Lot, goal float64, rig TrapRig, rules TrapRules) (Outcome, error) {
 	if rig.Returns != "either" && rig.Returns != string(eq.Floor.Return) {
-		return Outcome{}, fmt.Errorf("%w: %s needs a %s return, the receiver returns the %s layer", ErrNoTrap, eq.Mixture.Solvent.Key, eq.Floor.Return, rig.Returns)
+		return Outcome{}, fmt.Errorf("%w: %s needs a %s return, the receiver returns the %s layer", ErrNoTrap, eq.Mixture.Solvent.Called(), eq.Floor.Return, rig.Returns)
 	}
 	if rules.LongestRefluxS > 0 && rules.LongestRefluxS < rules.ShortestRefluxS {
 		return Outcome{}, fmt.Errorf("%w: %.3g h of reflux; a trap is run for %.3g h at least", ErrNoTrap, rules.LongestRefluxS/secondsPerHour, rules.ShortestRefluxS/secondsPerHour)
@@ -180,7 +180,7 @@ func (b *boiling) start(feed Lot) error {
 	b.charged = b.solvent
 	az := b.eq.Azeotrope
 	if az.Kind == thermo.Heterogeneous && b.fraction() > az.Layers.XAqueous {
-		return fmt.Errorf("%w: at %.3g %% water the pot is water with a little %s; settle it first", ErrNoTrap, 100*feed.Water(), b.m.Solvent.Key)
+		return fmt.Errorf("%w: at %.3g %% water the pot is water with a little %s; settle it first", ErrNoTrap, 100*feed.Water(), b.m.Solvent.Called())
 	}
 	v, err := b.vapour(b.fraction())
 	if err != nil {
@@ -188,7 +188,7 @@ func (b *boiling) start(feed Lot) error {
 	}
 	b.startK, b.potK = v.TempK, v.TempK
 	if b.startK <= b.rig.RoomK {
-		return fmt.Errorf("%w: %s boils at %.1f °C at %.4g kPa, not above the room's %.1f °C", ErrNoTrap, b.m.Solvent.Key, b.startK-273.15, b.eq.PressurePa/1e3, b.rig.RoomK-273.15)
+		return fmt.Errorf("%w: %s boils at %.1f °C at %.4g kPa, not above the room's %.1f °C", ErrNoTrap, b.m.Solvent.Called(), b.startK-273.15, b.eq.PressurePa/1e3, b.rig.RoomK-273.15)
 	}
 	if err := b.checkCoolant(); err != nil {
 		return fmt.Errorf("%w: %w", ErrNoTrap, err)

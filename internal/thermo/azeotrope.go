@@ -123,7 +123,7 @@ func (m *Mixture) homogeneous(pressurePa float64) (Azeotrope, error) {
 		if (last > 0) != (next > 0) {
 			root, err := Brent(lnVolatility, logit-2*edge/steps, logit, 1e-10)
 			if err != nil {
-				return none, fmt.Errorf("water + %s: azeotrope: %w", m.Solvent.Key, err)
+				return none, fmt.Errorf("water + %s: azeotrope: %w", m.Solvent.Called(), err)
 			}
 			a, stable, err := m.stableAzeotrope(1/(1+math.Exp(-root)), pressurePa)
 			if err != nil || stable {

@@ -28,7 +28,7 @@ func Boil(p *Pure, pressurePa float64) (tK float64, err error) {
 		return math.Log(p.VapourPressurePa.At(t) / pressurePa)
 	}, lo, hi, temperatureToleranceK)
 	if err != nil {
-		return math.NaN(), fmt.Errorf("%s: no boiling point at %.4g kPa: %w", p.Key, pressurePa/1e3, err)
+		return math.NaN(), fmt.Errorf("%s: no boiling point at %.4g kPa: %w", p.Called(), pressurePa/1e3, err)
 	}
 	return tK, nil
 }
@@ -78,7 +78,7 @@ func (m *Mixture) BubbleFrom(xWater, pressurePa, guessK float64) (Vapour, error)
 	lo, hi := searchRange(m.Solvent)
 	t, err := Brent(func(t float64) float64 { f, _ := m.bubbleExcess(xWater, pressurePa, t); return f }, lo, hi, temperatureToleranceK)
 	if err != nil {
-		return Vapour{}, fmt.Errorf("water + %s, x = %.4g, %.4g kPa: no bubble point: %w", m.Solvent.Key, xWater, pressurePa/1e3, err)
+		return Vapour{}, fmt.Errorf("water + %s, x = %.4g, %.4g kPa: no bubble point: %w", m.Solvent.Called(), xWater, pressurePa/1e3, err)
 	}
 	_, y := m.bubbleExcess(xWater, pressurePa, t)
 	return Vapour{t, y}, nil

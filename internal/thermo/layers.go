@@ -44,7 +44,7 @@ func (l *TernaryLayers) DensityDifference() float64 {
 func (m *Ternary) CheckReceiver(tK float64) error {
 	for _, p := range []*Pure{m.Pure[InWater], m.Pure[InCarrier]} {
 		if tK <= p.MeltingK {
-			return fmt.Errorf("%s freezes at %.1f °C, the receiver is at %.1f °C", p.Key, p.MeltingK-273.15, tK-273.15)
+			return fmt.Errorf("%s freezes at %.1f °C, the receiver is at %.1f °C", p.Called(), p.MeltingK-273.15, tK-273.15)
 		}
 	}
 	return m.CheckTemperature(tK)

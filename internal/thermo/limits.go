@@ -55,7 +55,7 @@ func (m *Ternary) CheckTemperature(tK float64) error {
 	if tK < m.SpuriousGapBelowK {
 		return &OutsideModel{
 			fmt.Sprintf("%.1f °C is below %.1f °C", tK-273.15, m.SpuriousGapBelowK-273.15),
-			fmt.Sprintf("the model would split %s and %s, which mix", m.Pure[InSolvent].Key, m.Pure[InCarrier].Key),
+			fmt.Sprintf("the model would split %s and %s, which mix", m.Pure[InSolvent].Called(), m.Pure[InCarrier].Called()),
 		}
 	}
 	return checkTemperature(m.Limits, tK)

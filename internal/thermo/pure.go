@@ -8,6 +8,7 @@ package thermo
 // Pure holds what the equations need of one component.
 type Pure struct {
 	Key                  string
+	Name                 string // as it is called in texts; "": the key
 	MolarMassKgPerMol    float64
 	MeltingK, CriticalK  float64
 	VapourPressurePa     Correlation
@@ -15,4 +16,12 @@ type Pure struct {
 	HeatCapacityJPerMolK Correlation // liquid
 	DensityKgPerM3       Correlation // liquid
 	ViscosityPaS         Correlation // liquid
+}
+
+// Called is the name of the liquid in texts.
+func (p *Pure) Called() string {
+	if p.Name == "" {
+		return p.Key
+	}
+	return p.Name
 }

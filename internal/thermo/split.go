@@ -117,7 +117,7 @@ func (m *Mixture) polish(left, right, tK float64) (Split, error) {
 			return s, nil
 		}
 	}
-	return Split{}, fmt.Errorf("water + %s at %.2f K: the layers did not converge", m.Solvent.Key, tK)
+	return Split{}, fmt.Errorf("water + %s at %.2f K: the layers did not converge", m.Solvent.Called(), tK)
 }
 
 // layerDensity is the density of a layer at tK in kg/m3, from additive
@@ -155,7 +155,7 @@ func (m *Mixture) LayersAt(tK float64) (Layers, error) {
 		return Layers{Return: None, Reason: fmt.Sprintf("water freezes at the receiver's %.1f °C", tK-273.15)}, nil
 	}
 	if tK <= m.Solvent.MeltingK {
-		return Layers{Return: None, Reason: fmt.Sprintf("%s freezes at %.1f °C, above the receiver's %.1f °C", m.Solvent.Key, m.Solvent.MeltingK-273.15, tK-273.15)}, nil
+		return Layers{Return: None, Reason: fmt.Sprintf("%s freezes at %.1f °C, above the receiver's %.1f °C", m.Solvent.Called(), m.Solvent.MeltingK-273.15, tK-273.15)}, nil
 	}
 	if err := m.CheckTemperature(tK); err != nil {
 		return Layers{Return: None, Reason: err.Error()}, nil
@@ -165,7 +165,7 @@ func (m *Mixture) LayersAt(tK float64) (Layers, error) {
 		return Layers{}, err
 	}
 	if !s.Exists {
-		return Layers{Return: None, Reason: fmt.Sprintf("water and %s form no second layer at %.1f °C", m.Solvent.Key, tK-273.15)}, nil
+		return Layers{Return: None, Reason: fmt.Sprintf("water and %s form no second layer at %.1f °C", m.Solvent.Called(), tK-273.15)}, nil
 	}
 	l := Layers{Split: s, OrganicKgPerM3: m.layerDensity(s.XOrganic, tK), AqueousKgPerM3: m.layerDensity(s.XAqueous, tK)}
 	switch ratio := l.OrganicKgPerM3 / l.AqueousKgPerM3; {

@@ -178,7 +178,7 @@ func (m *Ternary) searchRange() (lo, hi float64) {
 }
 
 func (m *Ternary) name() string {
-	return fmt.Sprintf("water + %s + %s", m.Pure[InSolvent].Key, m.Pure[InCarrier].Key)
+	return fmt.Sprintf("water + %s + %s", m.Pure[InSolvent].Called(), m.Pure[InCarrier].Called())
 }
 
 // Mass turns mole fractions into mass fractions.
