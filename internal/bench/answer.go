@@ -140,7 +140,7 @@ func forbidden(q *Question, v catalog.Verdict, known bool) error {
 // takes up.
 func (a *Answer) wetter() error {
 	in, out := a.In.Water(), a.Out.Water()
-	if out <= in || !(a.Figure("water made by condensation") > 0) {
+	if out <= in || a.Balance.WaterMadeKg == 0 {
 		return nil
 	}
 	r := &Refusal{

@@ -91,7 +91,8 @@ func TestEveryPair(t *testing.T) {
 
 // Every soak that is computed for beads at rest is computed in charges and for a
 // stirred powder too, for every solvent over every sorbent, and two half charges
-// for a day each leave no more than one whole for a day.
+// for a day each leave no more than one whole for a day. A ketone may be dried in one
+// form and made wetter, which is refused, in another.
 func TestEverySoakInEveryForm(t *testing.T) {
 	c := shelf(t)
 	forms := []bench.Request{{Flags: map[string]string{}}, {Flags: map[string]string{"charges": "2"}}, {Stirred: true, Powder: true, Flags: map[string]string{}}}
@@ -103,6 +104,7 @@ func TestEverySoakInEveryForm(t *testing.T) {
 				continue
 			}
 			var out []float64
+			wetter := false
 			for _, form := range forms {
 				form.Kind, form.Solvent, form.Flags = "soak", s, maps.Clone(form.Flags)
 				maps.Copy(form.Flags, map[string]string{"agent": agent, "water": "200 mg/kg", "dose": "100 g/L", "hours": "24",
@@ -114,6 +116,7 @@ func TestEverySoakInEveryForm(t *testing.T) {
 				a, err := bench.Ask(c, q)
 				var refusal *bench.Refusal
 				if errors.As(err, &refusal) && refusal.Reason != "" {
+					wetter = wetter || s.Class == "ketone" && strings.Contains(refusal.Reason, "makes more water than that takes up")
 					continue
 				}
 				if err != nil {
@@ -123,7 +126,7 @@ func TestEverySoakInEveryForm(t *testing.T) {
 				plausible(t, a)
 				out = append(out, a.Out.Water())
 			}
-			if len(out) != 0 && len(out) != len(forms) {
+			if len(out) != 0 && len(out) != len(forms) && !wetter {
 				t.Errorf("%s over %s: only %d of %d forms were computed", solvent, agent, len(out), len(forms))
 			}
 			if len(out) == len(forms) {
@@ -146,7 +149,7 @@ func plausible(t *testing.T, a *bench.Answer) {
 	t.Helper()
 	in, out := a.In.Water(), a.Out.Water()
 	name := fmt.Sprintf("%s of %s over %s", a.Kind, a.Question.Solvent.Key, a.Agent)
-	if !(out > 0 && (out <= in*(1+1e-9) || a.Figure("water made by condensation") > 0)) {
+	if !(out > 0 && out <= in*(1+1e-9)) {
 		t.Errorf("%s: from %g to %g", name, in, out)
 	}
 	if a.Kind != steps.Reactive && a.Kind != steps.Salt && out < a.Floor*(1-1e-9) {

@@ -29,6 +29,7 @@ type Purchase struct {
 	Transport                     Transport
 	Process, Losses, Safety, Have float64
 	ToBuy                         float64 // process + losses + safety stock - on hand
+	LaterYears                    float64 // used up in a year after the first; less than process and losses where a first charge serves on
 	KgPerUnit                     float64 // mass of a unit; 0 where it has none
 	Orders                        []Order
 	Total                         decimal.Decimal
@@ -85,7 +86,7 @@ func (p *purchaser) purchase(n Need) (Purchase, error) {
 	price, priced := p.book[n.Item]
 	one := Purchase{
 		Item: n.Item, Label: label(p.cat, n.Item), Unit: n.Unit, Specification: p.specification(n.Item), Transport: transportOf(n.Item),
-		Process: n.Process, Losses: n.Losses, KgPerUnit: p.kgPerUnit(n), Priced: priced,
+		Process: n.Process, Losses: n.Losses, LaterYears: n.LaterYears, KgPerUnit: p.kgPerUnit(n), Priced: priced,
 	}
 	if priced {
 		one.Label = price.Label

@@ -149,6 +149,9 @@ func unitAmount(x float64, unit string) string {
 // purchaseText is the line of why and what has to be written on the order.
 func purchaseText(one *costs.Purchase) string {
 	parts := []string{one.Why}
+	if year := one.Process + one.Losses; one.Unit == "kg" && one.LaterYears > 0 && one.LaterYears < year*(1-1e-9) {
+		parts = append(parts, fmt.Sprintf("the need is the first year's, its whole first charge with it; later years use up %s", unitAmount(one.LaterYears, one.Unit)))
+	}
 	if one.Leftover > 0 && len(one.Orders) > 0 {
 		parts = append(parts, unitAmount(one.Leftover, one.Unit)+" left at the end of the year")
 	}

@@ -80,7 +80,8 @@ type routeOut struct {
 // purchaseOut is what is bought of one item, by mass.
 type purchaseOut struct {
 	Item  string           `json:"item"`
-	Need  number           `json:"need_kg_per_year"`
+	Need  number           `json:"need_kg_per_year"` // in the first year, a first charge whole
+	Later number           `json:"later_years_kg_per_year"`
 	Packs []packOut        `json:"packs"`
 	Total *decimal.Decimal `json:"total"`
 }
@@ -249,7 +250,7 @@ func showPurchases(r *study.Report) []purchaseOut {
 		if p.KgPerUnit == 0 {
 			continue
 		}
-		one := purchaseOut{Item: p.Item, Need: number((p.Process + p.Losses) * p.KgPerUnit), Packs: []packOut{}}
+		one := purchaseOut{Item: p.Item, Need: number((p.Process + p.Losses) * p.KgPerUnit), Later: number(p.LaterYears * p.KgPerUnit), Packs: []packOut{}}
 		if p.Priced {
 			one.Total = &p.Total
 		}

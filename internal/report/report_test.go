@@ -74,7 +74,7 @@ const (
 		"energy_kwh agent_kg solvent_lost_l"
 	cautionKeys  = "code level text"
 	excludedKeys = "id reason source"
-	purchaseKeys = "item need_kg_per_year packs total"
+	purchaseKeys = "item need_kg_per_year later_years_kg_per_year packs total"
 	packKeys     = "size_kg count price"
 	headKeys     = "agent cooling_water energy equipment labour purchase solvent_lost testing waste"
 )

@@ -57,7 +57,11 @@ func stepTitle(a *bench.Answer) string {
 	return title + ", at " + temperature(q)
 }
 
+// dose is the one that was asked for or found, else the agent by volume of the lot.
 func dose(o *steps.Outcome, volumeM3 float64) string {
+	if asked := o.Figure("dose"); !math.IsNaN(asked) {
+		return quantity.Significant(asked, 3) + " g/L"
+	}
 	return quantity.Significant(o.AgentKg/volumeM3, 3) + " g/L"
 }
 

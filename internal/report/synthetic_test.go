@@ -41,10 +41,10 @@ func buying() costs.Buying {
 		Purchases: []costs.Purchase{
 			{Item: "karl-fischer", Label: "reagent", Unit: "test", Process: 80, ToBuy: 80, Priced: true, Total: d("96"), Flag: costs.Undated, Why: "priced by the unit: no pack sizes are known",
 				Orders: []costs.Order{{Pack: costs.Pack{Price: d("1.2"), PerUnit: d("1.2"), LeadDays: -1}, Count: 1, Amount: d("80"), Cost: d("96"), Each: 1, OrderDay: 14, NeedDay: 14}}},
-			{Item: "sieve-3a", Label: "sieve 3A", Unit: "kg", Specification: "molecular sieve 3A, beads of 2 mm", Process: 12, Safety: 1, Have: 2, ToBuy: 11, KgPerUnit: 1, Priced: true,
+			{Item: "sieve-3a", Label: "sieve 3A", Unit: "kg", Specification: "molecular sieve 3A, beads of 2 mm", Process: 12, LaterYears: 2.5, Safety: 1, Have: 2, ToBuy: 11, KgPerUnit: 1, Priced: true,
 				Total: d("336"), Leftover: 0, Why: "the cheapest of the packs on offer",
 				Orders: []costs.Order{{Pack: large, Count: 2, Amount: d("10"), Cost: d("296"), Each: 1, Every: 152, NeedDay: 14}, {Pack: small, Count: 1, Amount: d("1"), Cost: d("40"), Each: 1, OrderDay: 320, NeedDay: 320}}},
-			{Item: "toluene", Label: "toluene", Unit: "litre", Losses: 16, ToBuy: 16, KgPerUnit: 0.867, Why: "no price: the packs are left open",
+			{Item: "toluene", Label: "toluene", Unit: "litre", Losses: 16, LaterYears: 16, ToBuy: 16, KgPerUnit: 0.867, Why: "no price: the packs are left open",
 				Transport: costs.Transport{UN: "1294", Class: "3", Group: "II", Basis: "from memory"}},
 		},
 		Flags: []string{"flammable: up to 120 L in store at once, the limit is 100 L"},

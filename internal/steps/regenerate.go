@@ -80,15 +80,20 @@ func RunRegenerate(m *thermo.Mixture, used UsedSieve, flush Flush, oven Oven, hi
 // ErrNoIgnition.
 func (u UsedSieve) Admit(f Flush, oven Oven, ovenK float64) error { return u.admit(f, oven, ovenK) }
 
-// FlushGasM3PerKg is the dry gas, at tK and 101.325 kPa, that carries a kilogram of
-// solvent off when it leaves with a share of the solvent's vapour pressure:
+// meteredK is the temperature at which gas is metered and paid for (common practice,
+// no source).
+const meteredK = 293.15
+
+// FlushGasM3PerKg is the dry gas, as it is metered at 20 °C and 101.325 kPa, that
+// carries a kilogram of solvent off at tK when it leaves with a share s of the
+// solvent's vapour pressure:
 //
-//	V = n R T/(s psat)
+//	n_gas = n (P/(s psat) - 1),  V = n_gas R T_metered/P
 //
-// less the vapour's own volume; none where the solvent boils at tK.
+// None where the solvent boils at tK.
 func FlushGasM3PerKg(solvent *thermo.Pure, tK, saturation float64) float64 {
 	vapourPa := saturation * solvent.VapourPressurePa.At(tK)
-	return math.Max(0, atmospherePa/vapourPa-1) / solvent.MolarMassKgPerMol * thermo.GasConstant * tK / atmospherePa
+	return math.Max(0, atmospherePa/vapourPa-1) / solvent.MolarMassKgPerMol * thermo.GasConstant * meteredK / atmospherePa
 }
 
 // admit refuses beads whose solvent could ignite: within SpareMarginK of its

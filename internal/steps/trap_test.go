@@ -225,7 +225,7 @@ func TestTrapBalances(t *testing.T) {
 }
 
 func closes(t *rapid.T, what string, in, out float64) {
-	if math.Abs(in-out) > 1e-8*math.Abs(in) {
+	if math.Abs(in-out) > 1e-10*math.Abs(in) {
 		t.Fatalf("%s: %g in, %g accounted for", what, in, out)
 	}
 }
