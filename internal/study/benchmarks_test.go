@@ -74,6 +74,25 @@ func BenchmarkSearchOfALot(b *testing.B) {
 	}
 }
 
+// BenchmarkSoakDraws takes a soak alone through the 2 000 draws of a comparison, the
+// draws included.
+func BenchmarkSoakDraws(b *testing.B) {
+	t := firstLot(b)
+	run, err := t.Tune(routes.Route{{Kind: steps.Soak, Agent: "sieve-3a"}})
+	if err != nil {
+		b.Fatal(err)
+	}
+	for b.Loop() {
+		l, err := doubt.New(t.Case, t.Book, t.Site, 2000, 1)
+		if err != nil {
+			b.Fatal(err)
+		}
+		if _, err := l.Through(&run); err != nil {
+			b.Fatal(err)
+		}
+	}
+}
+
 // BenchmarkTenThousandDraws takes a trap and a soak through 10 000 draws, the draws
 // included.
 func BenchmarkTenThousandDraws(b *testing.B) {
