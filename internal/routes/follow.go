@@ -109,7 +109,8 @@ func usable(a *catalog.Apparatus) float64 {
 	return a.Volume.SI * a.Fill.SI
 }
 
-// sameChoice is the range of volumes in which the same piece is chosen as for one.
+// sameChoice is the range of volumes in which the same piece is chosen as for one. It
+// ends at fifty pieces or a thousand such volumes, where nothing larger is looked at.
 func sameChoice(pieces []*catalog.Apparatus, volumeM3 float64) (from, to float64) {
 	chosen, _ := smallestThatFits(pieces, volumeM3)
 	edges := []float64{0, volumeM3 * 1e-3, volumeM3 * 1e3}
@@ -119,7 +120,7 @@ func sameChoice(pieces []*catalog.Apparatus, volumeM3 float64) (from, to float64
 		}
 	}
 	slices.Sort(edges)
-	from, to = 0, math.MaxFloat32
+	from, to = 0, edges[len(edges)-1]
 	for i := range edges[1:] {
 		if a, _ := smallestThatFits(pieces, (edges[i]+edges[i+1])/2); a == chosen {
 			continue

@@ -11,6 +11,7 @@ const (
 	cardLabel  = 1
 	cardText   = 2
 	cardFirst  = 3 // hours, mL, mg/kg, pot, head
+	cardLast   = 7 // of these
 	cardField  = 8
 	cardChosen = 9
 	cardTime   = 10 // of the chart, h
@@ -36,7 +37,7 @@ const (
 )
 
 func (l *layout) benchCard() *grid {
-	widths := []float64{18, 64, 9, 10, 9, 9, 9, 14, 14, 10, 10, 10}
+	widths := []float64{20, 40, 8, 10, 9, 9, 8, 12, 14, 10, 10, 10}
 	for range cardFigures * mostOnCard {
 		widths = append(widths, 14)
 	}
@@ -132,12 +133,11 @@ func (l *layout) card(g *grid, lot *lotModel) {
 	first := g.next()
 	l.cardTop(c, first)
 	c.texts("Stop checks", "done", func(w cardWords) []string { return w.stops })
-	beside := g.last() + 1
 	c.texts("Charge", "", func(w cardWords) []string { return w.charge })
 	c.texts("Set points", "", func(w cardWords) []string { return w.settings })
 	c.texts("When to stop", "", func(w cardWords) []string { return w.until })
+	beside := c.expectRows()
 	l.cardChart(c, first+4, beside)
-	c.expectRows()
 	l.testRowsOf(c)
 	g.fixedTexts("Storage, label", l.labelWords(lot))
 	c.texts("Waste", "weighed", func(w cardWords) []string { return w.waste })
@@ -161,14 +161,14 @@ func (l *layout) cardTop(c *cardModel, row int) {
 	state := fmt.Sprintf(`IF(%s>0,"Edited since the run: %s","Run of "&%s)`, changedName, runAgain, c.dateCell(row+2))
 	g.put(cardFirst, row+1, cell{look: message, formula: state, value: "Run of " + l.runDate()})
 	g.put(cardChosen, row+2, text(plain, l.runDate()))
-	g.flags = append(g.flags, flag{at(cardFirst, row+1), changedName + ">0", fail})
+	g.flags = append(g.flags, flag{at(cardFirst, row+1) + ":" + at(cardField, row+1), changedName + ">0", fail},
+		flag{at(cardText, row+4), changedName + ">0", fail})
 	g.put(cardLabel, row+2, text(words, "In words"))
 	values := make([]any, len(c.list))
 	for k, r := range c.list {
 		values[k] = capital(r.Label) + ". " + capital(lot.asked()) + "."
 	}
-	c.choose(cardText, row+2, helperText, words, "", "", values)
-	c.fit(row+2, values)
+	c.chooseAcross(cardField, row+2, values)
 	l.cardFacts(c, row+3)
 }
 
@@ -180,7 +180,8 @@ func (l *layout) cardFacts(c *cardModel, row int) {
 	c.g.put(cardLabel, row, text(heading, "The lot"))
 	c.g.put(cardText, row, text(heading, "follows the sheet Inputs"))
 	c.g.put(cardLabel, row+1, text(words, lot.solventName()))
-	c.g.put(cardText, row+1, text(words, "Amounts below are those of the run, for the batch of the run."))
+	state := fmt.Sprintf(`IF(%s>0,"Edited since: %s. Below stands the run.","Amounts below are those of the run.")`, changedName, runAgain)
+	c.g.put(cardText, row+1, cell{look: words, formula: state, value: "Amounts below are those of the run."})
 	for i, f := range []struct {
 		name, unit string
 		v          float64
@@ -194,18 +195,29 @@ func (l *layout) cardFacts(c *cardModel, row int) {
 	for _, column := range []int{cardFirst + 4, cardField} {
 		c.g.put(column, row, blank(heading))
 	}
-	c.g.heights[row] = 2*lineHeight + 1.5
+	c.g.heights[row] = linesHigh(2)
+}
+
+// chooseAcross shows a text of the chosen route over the columns up to the last, in
+// a row that has room for its longest choice.
+func (c *cardModel) chooseAcross(last, row int, values []any) {
+	c.choose(cardText, row, helperText, words, "", "", values)
+	for column := cardText + 1; column <= last; column++ {
+		c.g.put(column, row, blank(words))
+	}
+	c.g.merged = append(c.g.merged, merge{row, cardText, last})
+	c.fit(cardText, row, values)
 }
 
 // fit gives a row the height of its longest choice.
-func (c *cardModel) fit(row int, values []any) {
+func (c *cardModel) fit(column, row int, values []any) {
 	lines := 1
 	for _, v := range values {
 		if s, ok := v.(string); ok {
-			lines = max(lines, wrapped(s, (c.g.widths[cardText-1]-1)*charsPerUnit))
+			lines = max(lines, wrapped(s, c.g.roomFor(column, row), paints[words].size, false))
 		}
 	}
-	c.g.heights[row] = float64(lines)*lineHeight + 1.5
+	c.g.heights[row] = linesHigh(lines)
 }
 
 // texts is a part of a card whose sentences differ by route.
@@ -226,22 +238,19 @@ func (c *cardModel) texts(label, tick string, of func(cardWords) []string) {
 			}
 		}
 		c.g.put(cardLabel, row, count(i+1).as(plain))
-		c.choose(cardText, row, helperText, words, "", "", values)
-		c.fit(row, values)
-		if tick != "" {
-			c.g.put(cardField, row, blank(field))
+		if tick == "" {
+			c.chooseAcross(cardField, row, values)
+			continue
 		}
+		c.chooseAcross(cardLast, row, values)
+		c.g.put(cardField, row, blank(field))
 	}
 }
 
-// head starts a part of a card; without a last heading it leaves room beside it.
+// head starts a part of a card.
 func (c *cardModel) head(row int, label, last string) {
 	c.g.put(cardLabel, row, text(heading, label))
-	c.g.put(cardText, row, blank(heading))
-	if last == "" {
-		return
-	}
-	for column := cardFirst; column < cardField; column++ {
+	for column := cardText; column < cardField; column++ {
 		c.g.put(column, row, blank(heading))
 	}
 	c.g.put(cardField, row, text(heading, last))
@@ -263,29 +272,31 @@ func (g *grid) fixedTexts(label string, list []string) {
 
 var expectColumns = []column{{"Time", "h"}, {"Collected", "mL"}, {"Water", "mg/kg"}, {"Pot", "°C"}, {"Head", "°C"}}
 
-// expectRows list what is to be seen at which time of a step.
-func (c *cardModel) expectRows() {
+// expectRows list what is to be seen at which time of a step. They leave room for a
+// chart between the step and its figures, from the row returned.
+func (c *cardModel) expectRows() (first int) {
 	row := c.g.last() + 1
-	c.head(row, "Expect", "measured")
-	c.g.put(cardText, row, text(heading, "In the step, its time counted from its start; each charge of a still alike"))
+	c.head(row, "Expect, from the start of the step", "measured")
+	c.g.put(cardText, row, text(heading, "Water in the first step that boils, or else the first known; each charge of a still alike"))
 	for i, x := range expectColumns {
 		h := text(heading, x.heading())
 		h.right = true
 		c.g.put(cardFirst+i, row, h)
 		c.heads(row, helperExpect+i, x)
 	}
-	c.g.heights[row] = 2*lineHeight + 1.5
-	most := 0
+	c.g.heights[row] = linesHigh(2)
+	first = row + 1
+	most := 1
 	for _, w := range c.words {
 		most = max(most, len(w.expect))
 	}
 	formats := c.expectFormats()
 	for i := range most {
 		row++
-		c.g.put(cardLabel, row, count(i+1).as(plain))
 		c.g.put(cardField, row, blank(field))
 		c.expectRow(row, i, formats)
 	}
+	return first
 }
 
 func (e expected) figures() [5]float64 {
@@ -316,7 +327,8 @@ func (c *cardModel) expectRow(row, i int, formats [5]string) {
 			steps[k] = w.expect[i].step
 		}
 	}
-	c.choose(cardText, row, helperText, words, "", "", steps)
+	c.choose(cardLabel, row, helperText, words, "", "", steps)
+	c.fit(cardLabel, row, steps)
 	for f := range expectColumns {
 		values := make([]any, len(c.list))
 		for k, w := range c.words {
@@ -343,17 +355,20 @@ func (l *layout) testRowsOf(c *cardModel) {
 	for column := cardFirst; column <= cardField; column++ {
 		c.g.put(column, row, blank(field))
 	}
-	c.g.heights[row] = signHeight
+	c.g.heights[row] = max(signHeight, linesHigh(2))
 }
 
+// signFields are left open: two in a row, each a label and a field.
 func (g *grid) signFields() {
 	row := g.last() + 1
-	for i, label := range []string{"Operator, date", "Started, ended at", "Litres out, mg/kg", "Released by, date"} {
-		g.put(cardLabel, row+i, text(words, label))
-		for column := cardText; column <= cardField; column++ {
+	for i, labels := range [][2]string{{"Operator, date", "Started, ended at"}, {"Litres out, mg/kg", "Released by, date"}} {
+		g.put(cardLabel, row+i, text(words, labels[0]))
+		g.put(cardText, row+i, blank(field))
+		g.across(cardFirst, cardFirst+1, row+i, words, labels[1])
+		for column := cardFirst + 2; column <= cardField; column++ {
 			g.put(column, row+i, blank(field))
 		}
-		g.merged = append(g.merged, merge{row + i, cardText, cardField})
+		g.merged = append(g.merged, merge{row + i, cardFirst + 2, cardField})
 		g.heights[row+i] = signHeight
 	}
 }

@@ -21,7 +21,7 @@ const (
 
 func (l *layout) buying() *grid {
 	g := newGrid(sheetBuying, "What to order for a year of the recommended routes, all lots together. Values of the program: after an edit of an input or a price the list is that of the run, no longer that of the sheet.",
-		tabResult, checkCell(), 22, 44, 11, 10, 10, 10, 10, 8, 10, 8, 12, 12, 12, 22, 14, 14)
+		tabResult, checkCell(), 16, 29, 9, 8.5, 8.5, 8.5, 8.5, 7, 7, 8, 11, 11, 10, 16, 12, 12)
 	g.mixed, g.frozenRows, g.frozenColumns = true, frameRows, 1
 	l.banner(g, frameRows+1)
 	list := l.report.Buying.Purchases

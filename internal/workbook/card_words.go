@@ -31,8 +31,9 @@ func (l *layout) cardWords(r *routeModel) cardWords {
 	for i := range r.Run.Outcomes {
 		o := &r.Run.Outcomes[i]
 		name := capital(string(o.Kind))
+		short := name
 		if several {
-			name = fmt.Sprintf("Step %d, %s", i+1, o.Kind)
+			name, short = fmt.Sprintf("Step %d, %s", i+1, o.Kind), fmt.Sprintf("%d %s", i+1, o.Kind)
 		}
 		sieve := ""
 		if o.Kind == steps.Soak || o.Kind == steps.Column {
@@ -49,7 +50,7 @@ func (l *layout) cardWords(r *routeModel) cardWords {
 			w.settings = append(w.settings, name+": "+s)
 		}
 		w.until = append(w.until, name+": "+oneLine(why(*o))+".")
-		w.expect = append(w.expect, expectations(name, o, expectPoints(r))...)
+		w.expect = append(w.expect, expectations(short, o, expectPoints(r))...)
 	}
 	return w
 }
@@ -223,7 +224,7 @@ func expectations(name string, o *steps.Outcome, most int) (out []expected) {
 		case steps.Forerun:
 			e.step, e.collectedML = name+": drawn off", p.DrawnM3*1e6
 		case steps.Column:
-			e.step = name + ": at the outlet"
+			e.step = name + ": outlet"
 		}
 		out = append(out, e)
 	}

@@ -44,11 +44,11 @@ func courseOf(r *routeModel) drawnCourse {
 }
 
 const (
-	cardChartWidth  = 440 // pixels, within the columns of figures
-	cardChartHeight = 215
+	cardChartWidth  = 280 // pixels, within the column of text
+	cardChartHeight = 190
 )
 
-// cardChart draws water against time for the chosen route, beside its sentences.
+// cardChart draws water against time for the chosen route, beside its figures.
 // Its points stand to the right of the card, from the row data.
 func (l *layout) cardChart(c *cardModel, data, row int) {
 	g := c.g
@@ -66,7 +66,7 @@ func (l *layout) cardChart(c *cardModel, data, row int) {
 			low, high = min(low, w), max(high, w)
 		}
 	}
-	g.heights[data] = lineHeight + 1.5
+	g.heights[data] = linesHigh(1) // the headings to the right of it are tall
 	for i, x := range []column{{name: "Drawn"}, {"Time", "h"}, {"Water", "mg/kg"}, {"Accept at", "mg/kg"}} {
 		g.put(cardChosen+i, data, text(heading, x.heading()))
 	}
@@ -76,20 +76,20 @@ func (l *layout) cardChart(c *cardModel, data, row int) {
 	for i := range cardPoints {
 		c.chartRow(data+1+i, i, courses)
 	}
-	ch := baseChart(excelize.Scatter, "Water against time, mg/kg, logarithmic axis")
-	ch.Title.Paragraph[0].Font.Size = 10
+	ch := baseChart(excelize.Scatter, "mg/kg against hours, logarithmic axis")
+	ch.Title.Paragraph[0].Font.Size = 9
 	sheet := sheetBenchCard
 	ch.Format.AltText = fmt.Sprintf("Line on a logarithmic axis: water against time in a step of the route chosen on the card of lot %d, with the acceptance limit. The numbers stand right of the card, rows %d to %d.", c.lot.no, data+1, data+cardPoints)
-	ch.XAxis.Title = axisTitle("hours")
 	ch.XAxis.MajorGridLines = true
 	ch.XAxis.NumFmt = excelize.ChartNumFmt{CustomNumFmt: "General"}
 	logarithmic(&ch.YAxis, "mg/kg")
+	ch.YAxis.Title = excelize.ChartTitle{} // the title names both: the chart is small
 	bound(&ch.YAxis, low, high)
 	points := func(column int) string { return on(sheet, area(column, data+1, data+cardPoints)) }
 	head := func(column int) string { return on(sheet, fixed(column, data)) }
 	ch.Series = append(ch.Series, drawnLine(0, on(sheet, fixed(cardChosen, data+1)), points(cardTime), points(cardWater)),
 		drawnLevel(head(cardLevel), points(cardTime), points(cardLevel), "D55E00", excelize.LineDashDash))
-	g.draw(cardFirst, row, cardChartWidth, cardChartHeight, fmt.Sprintf("Lot %d: water against time", c.lot.no), ch)
+	g.draw(cardText, row, cardChartWidth, cardChartHeight, fmt.Sprintf("Lot %d: water against time", c.lot.no), ch)
 }
 
 func (c *cardModel) chartRow(row, i int, courses []drawnCourse) {

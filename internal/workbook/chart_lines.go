@@ -32,7 +32,7 @@ func drawnLine(k int, name, x, y string) excelize.ChartSeries {
 // drawnPoints is a row of markers without a line.
 func drawnPoints(name, x, y, symbol string) excelize.ChartSeries {
 	return excelize.ChartSeries{Name: name, Categories: x, Values: y, Fill: solid(darkInk),
-		Line: excelize.LineOptions{Type: excelize.LineNone}, Marker: mark(symbol, "F0E442", 11)}
+		Line: excelize.LineOptions{Type: excelize.LineNone}, Marker: mark(symbol, "333333", 9)}
 }
 
 func mark(symbol, colour string, size int) excelize.ChartMarker {

@@ -13,7 +13,7 @@ const mostLotsDrawn = 8
 
 const (
 	rangeChartColumn = 7
-	rangeChartWidth  = 700 // pixels
+	rangeChartWidth  = 650 // pixels
 )
 
 // rangeCharts draws the range of the cost per litre of the first routes of each lot.

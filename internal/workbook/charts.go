@@ -57,8 +57,8 @@ var headColours = map[steps.Head]string{
 }
 
 const (
-	costWidth   = 755 // pixels
-	waterWidth  = 745
+	costWidth   = 670 // pixels
+	waterWidth  = 640
 	waterColumn = 9 // clear of the chart to its left
 )
 
@@ -192,12 +192,12 @@ func solid(colour string) excelize.Fill {
 }
 
 func axisTitle(s string) excelize.ChartTitle {
-	return excelize.ChartTitle{Paragraph: []excelize.RichTextRun{{Text: s, Font: &excelize.Font{Color: darkInk, Size: 9}}}}
+	return excelize.ChartTitle{Paragraph: []excelize.RichTextRun{{Text: s, Font: &excelize.Font{Color: darkInk, Size: 10}}}}
 }
 
 func baseChart(kind excelize.ChartType, name string) *excelize.Chart {
 	vary := false
-	font := excelize.Font{Color: darkInk, Size: 9}
+	font := excelize.Font{Color: darkInk, Size: 10}
 	return &excelize.Chart{
 		Type:       kind,
 		Title:      excelize.ChartTitle{Paragraph: []excelize.RichTextRun{{Text: name, Font: &excelize.Font{Color: black, Size: 12, Bold: true}}}},

@@ -15,12 +15,14 @@ const (
 	compareRank     = 8
 	compareLimit    = 15
 	compareTarget   = 16
-	comparePlotted  = 17
+	compareState    = 17
+	comparePlotted  = 18 // off the printed page
 )
 
 func (l *layout) compare() *grid {
 	g := newGrid(sheetCompare, "One row per route. Water, hours, amounts, costs and ranks follow the inputs and the prices; State says where the program has to be run again. Money in "+l.currency()+".",
-		tabResult, checkCell(), 26, 36, 9, 12, 10, 11, 10, 7, 9, 9, 9, 11, 11, 12, 12, 10, 13, 16)
+		tabResult, checkCell(), 17, 25, 9.5, 11, 10.5, 10.5, 9.5, 6.5, 8.5, 8.5, 7.5, 10.5, 10, 11, 9.5, 9, 14, 12)
+	g.printColumns = compareState
 	l.compareBlock(g)
 	l.alongBlock(g)
 	l.compareCharts(g)
@@ -34,8 +36,8 @@ func (l *layout) compareBlock(g *grid) {
 	units := frameRows + 1
 	first := g.table(units, "", []column{{name: "Lot"}, {name: "Route id"}, {name: "Reaches target"}, {"Water out", "mg/kg"},
 		{"Hours attended", "h"}, {"Cost per batch", "1"}, {"Cost per litre", "1"}, {"Rank", "1"}, {"Hours total", "h"}, {"Energy", "kWh"}, {"Waste", "kg"},
-		{"Litres delivered", "L"}, {"Cost per year", l.currency()}, {"Emissions", "kg CO2e"}, {"Acceptance limit", "mg/kg"}, {"Target", "mg/kg"},
-		{"Water left, as drawn", "mg/kg"}, {name: "State"}})
+		{"Litres delivered", "L"}, {"Cost per year", l.currency()}, {"Emissions", "kg CO2e"}, {"Accept at", "mg/kg"}, {"Target", "mg/kg"},
+		{name: "State"}, {"Water left, as drawn", "mg/kg"}})
 	g.put(1, units, text(block, "Routes"))
 	g.put(compareBatch, units, text(plain, l.currency()))
 	g.put(compareLitre, units, text(plain, l.money("L")))
@@ -48,11 +50,12 @@ func (l *layout) compareBlock(g *grid) {
 	if len(l.routes) == 0 {
 		return
 	}
+	g.boldRows, g.boldColumns = l.compareRows, 2
 	place := func(column int) string { return at(column, first) + ":" + at(column, l.compareRows.last) }
 	g.flags = append(g.flags,
 		flag{place(compareReaches), fmt.Sprintf(`$C%d="yes"`, first), pass},
 		flag{place(compareReaches), fmt.Sprintf(`$C%d="no"`, first), fail},
-		flag{place(18), fmt.Sprintf(`LEN($R%d)>0`, first), warn},
+		flag{place(compareState), fmt.Sprintf(`LEN($%s)>0`, at(compareState, first)), warn},
 		flag{fmt.Sprintf("A%d:B%d", first, l.compareRows.last), fmt.Sprintf(`$H%d=1`, first), pass},
 		flag{place(compareRank), fmt.Sprintf(`$H%d=1`, first), pass})
 }
@@ -86,6 +89,6 @@ func (l *layout) compareRow(g *grid, i int) {
 		carbon,
 		costs(rankLimit, rank, r.lot.acceptAt).in("mg/kg").shown(water),
 		derived(l.lotName(r.lot, "target_water"), r.lot.target).in("mg/kg").shown(water),
-		derived(fmt.Sprintf("MAX(D%d,job_lowest_plotted)", row), max(r.waterOut, lowestPlotted)).in("mg/kg").shown(water),
-		l.routeState(r))
+		l.routeState(r),
+		derived(fmt.Sprintf("MAX(D%d,job_lowest_plotted)", row), max(r.waterOut, lowestPlotted)).in("mg/kg").shown(water))
 }

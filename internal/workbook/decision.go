@@ -3,6 +3,7 @@ package workbook
 import (
 	"fmt"
 	"math"
+	"strings"
 )
 
 // Columns of Decision.
@@ -37,8 +38,16 @@ func (l *layout) decision() *grid {
 	l.banner(g, frameRows+1)
 	g.across(1, decideChance, frameRows+1, words, l.ofRun()+". "+shortened(l.report.Job.Title, mostTitle))
 	full := l.inFull()
+	if full == mostInFull {
+		g.widths[decideRoute-1] += 8 // fewer lines
+	}
+	common := commonHazards(l.lots[:full])
 	for _, lot := range l.lots[:full] {
-		l.decideFull(g, lot)
+		l.decideFull(g, lot, common)
+	}
+	if len(common) > 0 {
+		g.put(1, g.last()+1, blank(plain))
+		l.says(g, "Controls for every lot above", strings.Join(common, " "))
 	}
 	l.decideShort(g, l.lots[full:])
 	l.assumptionRows(g)
@@ -59,7 +68,7 @@ func (l *layout) inFull() int {
 
 func (l *layout) decideHeading(g *grid, row int) {
 	unit := l.money("L")
-	for i, c := range []column{{"Place", "1"}, {name: "What"}, {name: "Route id"}, {"Litre in spec", unit}, {"5 % draws", unit}, {"95 % draws", unit},
+	for i, c := range []column{{"Place", "1"}, {name: "What"}, {name: "Route id"}, {"In spec", unit}, {"5 %", unit}, {"95 %", unit},
 		{"Attended", "h"}, {"Water", "mg/kg"}, {"Chance", "%"}, {"Row", "1"}} {
 		h := text(heading, c.heading())
 		h.right = c.unit != ""
@@ -139,7 +148,7 @@ func (l *layout) pickRow(g *grid, row int, r *routeModel, picks []pick) {
 }
 
 // decideFull gives a lot its own part of the page.
-func (l *layout) decideFull(g *grid, lot *lotModel) {
+func (l *layout) decideFull(g *grid, lot *lotModel, common []string) {
 	row := g.next()
 	g.across(1, decideChance, row, block, fmt.Sprintf("Lot %d: %s", lot.no, shortened(lot.Job.Name, mostTitle)))
 	g.across(1, decideChance, row+1, words, capital(lot.asked())+".")
@@ -152,7 +161,7 @@ func (l *layout) decideFull(g *grid, lot *lotModel) {
 	if best == nil {
 		return
 	}
-	l.says(g, "Hazards, controls", hazards(lot, best))
+	l.says(g, "Hazards, controls", strings.Join(except(hazards(lot, best), common), " "))
 	l.says(g, "What would change it", turns(lot))
 	l.says(g, "What it turns on", doubts(lot, best))
 }
@@ -270,4 +279,4 @@ func (l *layout) signRows(g *grid) {
 	}
 }
 
-const signHeight = 22 // points: room for a hand
+const signHeight = 20 // points: room for a hand

@@ -111,6 +111,8 @@ type grid struct {
 	merged        []merge
 	breaks        []int // rows that start a printed page
 	links         []jump
+	boldRows      rows // in which a mark can make the first columns bold
+	boldColumns   int
 }
 
 // jump is a cell and the place in the workbook that a click on it leads to.

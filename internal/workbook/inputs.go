@@ -28,7 +28,7 @@ const lowestPlotted = 0.1 // mg/kg: a log axis has no zero
 
 func (l *layout) inputs() *grid {
 	g := newGrid(sheetInputs, "What the job asks for. Blue cells may be edited; the column State says what follows the edit and what needs a new run.",
-		tabInput, checkCell(), 27, 34, 16, 12, 46, 16, 22, 22)
+		tabInput, checkCell(), 24, 34, 14, 10, 42, 14, 21, 20)
 	first := g.table(frameRows+2, "The run", inputColumns)
 	g.frozenRows = first - 1
 	l.runInputs(g)

@@ -106,7 +106,7 @@ func (l *layout) putLive(b *liveBlock, row int, lot *lotModel, s *stageModel, co
 			f = fmt.Sprintf("INDEX(%s,{fed})", area(out, l.lotRows.rows.first, b.rows.first-3))
 		}
 		if f == "" {
-			g.put(column, row, number(cutTo(constants[c.key], constantDigits), c.unit).shown("0.0000E+00"))
+			g.put(column, row, number(cutTo(constants[c.key], constantDigits), c.unit).shown("0.00E+00"))
 			continue
 		}
 		expanded, err := b.expand(f, row, l.lotRows, lot.no)
@@ -122,11 +122,11 @@ const constantDigits = 10
 func formatOfUnit(unit string) string {
 	switch unit {
 	case "kg", "L", "h", "kWh", "mg/kg", "m":
-		return "#,##0.0000"
+		return "#,##0.000"
 	case "1":
 		return "General"
 	}
-	return "0.0000E+00"
+	return "0.00E+00"
 }
 
 // fallBack computes the live steps and gives up those that the sheet gets wrong; it

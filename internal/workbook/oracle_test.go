@@ -277,7 +277,7 @@ func TestFaultsAreFlagged(t *testing.T) {
 	// The sheet follows this input; the routes whose curves end before it say so.
 	state := map[string]bool{}
 	for place, c := range stale.cells["Compare"] {
-		if strings.HasPrefix(place, "R") {
+		if strings.HasPrefix(place, columnName(compareState)) {
 			state[c.text] = true
 		}
 	}

@@ -112,7 +112,7 @@ func (g *grid) scale() float64 {
 const (
 	uprightWidth  = 595.3 - 2*72*marginInches
 	uprightHeight = 792 - 72*(marginInches+footInches)
-	reserve       = 0.94 // readers differ in the height of rows
+	reserve       = 0.97 // readers differ in the height of rows
 )
 
 // cardScale is the scale in per cent at which the largest part that is printed by

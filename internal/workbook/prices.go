@@ -14,7 +14,7 @@ const mostMoney = 1e7
 
 func (l *layout) priceList() *grid {
 	g := newGrid(sheetPrices, "What things cost. Edit a blue cell and every cost, total and rank follows. Prices are dated; check them before a decision.",
-		tabInput, checkCell(), 27, 36, 13, 13, 50, 13, 15, 16, 11, 12, 17, 29)
+		tabInput, checkCell(), 20, 27, 10, 10, 33, 10, 14, 15, 9, 11, 12, 17)
 	first := g.table(frameRows+2, "Prices, "+l.currency(), priceColumns)
 	g.frozenRows = first - 1
 	format := l.priceFormat()
@@ -27,6 +27,7 @@ func (l *layout) priceList() *grid {
 		g.put(1, first, text(words, "no prices"))
 		return g
 	}
+	g.boldRows, g.boldColumns = l.priceRows, len(priceColumns)
 	unit := l.currency()
 	g.limits = append(g.limits, limit{place: fmt.Sprintf("C%d:C%d", first, l.priceRows.last), low: 0, high: mostMoney,
 		prompt: "Price per unit, in " + unit + ". Costs, totals and ranks follow.",
@@ -40,10 +41,10 @@ func (l *layout) priceList() *grid {
 func (l *layout) priceRow(g *grid, row int, p costs.Price, format string) {
 	unit := l.money(p.Unit)
 	value := number(float(p.PerUnit), unit).shown(format)
-	g.putRow(row, text(plain, p.Item), text(words, p.Label), value.as(input), text(plain, unit), text(words, priceSource(p)),
+	g.putRow(row, text(words, p.Item), text(words, p.Label), value.as(input), text(plain, unit), text(words, priceSource(p)),
 		value, text(plain, follows),
 		cell{look: formula, formula: fmt.Sprintf(`IF(%s=%s,"",%s)`, at(colValue, row), at(colRun, row), at(colAfter, row)), value: ""},
-		text(plain, ownOrDefault(p)), text(plain, p.Date), text(plain, p.Confidence), text(words, priceMark(p)))
+		text(plain, ownOrDefault(p)), text(plain, p.Date), text(words, p.Confidence), text(words, priceMark(p)))
 	l.name(priceName(p.Item, p.Unit), sheetPrices, colValue, row)
 }
 

@@ -1,7 +1,7 @@
 package workbook
 
 // curvesPrinted rows of Curves are printed: tables are for looking up, not for paper.
-const curvesPrinted = 48
+const curvesPrinted = 40
 
 // workPages are the rows that the working sheets print: the blocks with a row for
 // each step or route, not what they are computed from.

@@ -26,7 +26,7 @@ func seen(v float64, unit, format string) cell { return finite(cutTo(v, shownDig
 
 func (l *layout) ranges() *grid {
 	g := newGrid(sheetRanges, "How sure the figures are, what moves them, and where the choice turns. Values of the program; ranks and the cost against litres a month follow the prices.",
-		tabResult, checkCell(), 28, 34, 12, 12, 12, 12, 12, 12, 12, 12, 12, 12, 12, 12, 12)
+		tabResult, checkCell(), 20, 27, 10.5, 12, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5)
 	g.mixed, g.frozenRows, g.frozenColumns = true, frameRows, 2
 	l.banner(g, frameRows+1)
 	l.rangeBlock(g)

@@ -3,6 +3,7 @@ package workbook
 import (
 	"fmt"
 	"math"
+	"slices"
 	"strings"
 	"time"
 
@@ -110,8 +111,7 @@ func largest(r *routeModel) (steps.Head, float64) {
 
 // hazards are what must be known of the solvent, then the cautions of the route,
 // the gravest first.
-func hazards(lot *lotModel, r *routeModel) string {
-	var parts []string
+func hazards(lot *lotModel, r *routeModel) (parts []string) {
 	if s := lot.Solvent; s != nil {
 		h := s.Hazards
 		var facts []string
@@ -127,7 +127,33 @@ func hazards(lot *lotModel, r *routeModel) string {
 			parts = append(parts, capital(lot.solventName())+": "+strings.Join(facts, "; ")+".")
 		}
 	}
-	return strings.Join(append(parts, cautionTexts(r, "danger", "caution")...), " ")
+	return append(parts, cautionTexts(r, "danger", "caution")...)
+}
+
+// commonHazards hold for the recommended routes of all of several lots.
+func commonHazards(lots []*lotModel) (common []string) {
+	n := 0
+	for _, lot := range lots {
+		best := lot.best()
+		if best == nil {
+			continue
+		}
+		all := hazards(lot, best)
+		if n++; n == 1 {
+			common = all
+		} else {
+			common = slices.DeleteFunc(slices.Clone(common), func(s string) bool { return !slices.Contains(all, s) })
+		}
+	}
+	if n < 2 {
+		return nil
+	}
+	return common
+}
+
+// except leaves out what is said elsewhere.
+func except(all, said []string) []string {
+	return slices.DeleteFunc(slices.Clone(all), func(s string) bool { return slices.Contains(said, s) })
 }
 
 func cautionTexts(r *routeModel, levels ...string) (out []string) {

@@ -1,16 +1,10 @@
 package workbook
 
-import (
-	"math"
-	"strings"
-	"unicode/utf8"
-)
-
 const (
-	lineHeight   = 13.5 // points
-	tallest      = 400  // points, below the limit of a row
-	charsPerUnit = 1.3  // characters of text that fit in a unit of column width
-	charsPerBold = 1.15
+	lineHeight    = 12.75 // points, of text in 10 points
+	tallest       = 400   // points, below the limit of a row
+	pointsForText = 5.9   // of a unit of column width; readers give it 6.0 or 6.1 points
+	besideText    = 11.0  // points: indent and edges of a cell
 )
 
 // height gives a row room for its wrapped text.
@@ -18,25 +12,25 @@ func (g *grid) height(row int) float64 {
 	if h, ok := g.heights[row]; ok {
 		return h
 	}
-	lines, size := 1, 10.0
 	if row > len(g.rows) {
 		return rowPoints
 	}
+	tall := lineHeight
 	for i, c := range g.rows[row-1] {
 		p := paints[c.look]
-		size = max(size, p.size)
+		lines := 1
 		if s, ok := c.value.(string); ok && p.wrap && i < len(g.widths) {
-			fit := charsPerUnit
-			if p.bold {
-				fit = charsPerBold
-			}
-			lines = max(lines, wrapped(s, (g.roomFor(i+1, row)-1)*fit))
+			lines = wrapped(s, g.roomFor(i+1, row), p.size, p.bold || g.mayBeBold(i+1, row))
 		}
+		tall = max(tall, float64(lines)*lineHeight*p.size/10)
 	}
-	return min(tallest, float64(lines)*lineHeight*size/10+1.5)
+	return min(tallest, tall+2)
 }
 
-// roomFor is the width that a cell's text has, in units of column width.
+// linesHigh is the height of a row of some lines of text.
+func linesHigh(lines int) float64 { return float64(lines)*lineHeight + 2 }
+
+// roomFor is the width that a cell's text has, in points.
 func (g *grid) roomFor(column, row int) float64 {
 	last := column
 	for _, m := range g.merged {
@@ -48,28 +42,10 @@ func (g *grid) roomFor(column, row int) float64 {
 	for _, w := range g.widths[column-1 : last] {
 		width += w
 	}
-	return width
+	return width*pointsForText - besideText
 }
 
-// wrapped counts the lines of a text in a column of the given characters.
-func wrapped(s string, width float64) int {
-	lines := 0
-	for _, paragraph := range strings.Split(s, "\n") {
-		used := 0.0
-		lines++
-		for _, word := range strings.Fields(paragraph) {
-			n := float64(utf8.RuneCountInString(word))
-			switch {
-			case n > width:
-				lines += int(math.Ceil((used+n)/width)) - 1
-				used = math.Mod(used+n, width) + 1
-			case used+n > width:
-				lines++
-				used = n + 1
-			default:
-				used += n + 1
-			}
-		}
-	}
-	return lines
+// mayBeBold reports whether a mark can make the text of a cell bold.
+func (g *grid) mayBeBold(column, row int) bool {
+	return column <= g.boldColumns && row >= g.boldRows.first && row <= g.boldRows.last
 }

@@ -110,12 +110,15 @@ func TestPropertiesHaveNoClock(t *testing.T) {
 	}
 }
 
-// Numbers never stand in a merged cell: merges are for running text only.
+// Numbers never stand in a merged cell: merges are for running text only, which on a
+// card follows the chosen route.
 func TestMergesHoldText(t *testing.T) {
 	for _, g := range layoutOf(t).grids {
 		for _, m := range g.merged {
 			for c := m.first; c <= m.last; c++ {
-				if x := g.rows[m.row-1][c-1]; x.isNumber() || x.formula != "" {
+				x := g.rows[m.row-1][c-1]
+				_, sentence := x.value.(string)
+				if x.isNumber() || x.formula != "" && !(sentence && g.name == sheetBenchCard && x.look == words) {
 					t.Errorf("%s!%s is merged and holds %v", g.name, at(c, m.row), x.value)
 				}
 			}

@@ -13,8 +13,9 @@ import (
 const (
 	stepWaterIn  = 7
 	stepWaterOut = 8
-	stepWhy      = 17
-	stepState    = 18
+	stepWhy      = 16
+	stepState    = 17
+	stepPlace    = 18 // of the step among the live blocks, off the printed page
 )
 
 // stepModel is one step with its place.
@@ -34,8 +35,7 @@ func (l *layout) allSteps() (out []stepModel) {
 }
 
 func (l *layout) steps() *grid {
-	widths := append([]float64{26, 30, 9, 9, 10}, slices.Repeat([]float64{12}, 150)...)
-	widths[stepWhy-1], widths[stepState-1] = 44, 18
+	widths := []float64{15, 22, 7, 6.5, 9, 11, 9, 9, 9, 9, 9, 9, 9, 9, 9, 27, 14, 9}
 	g := newGrid(sheetSteps, "What each step does. The blocks of lots and steps follow the inputs by the closed forms and curves of the program; the column State says where only a new run can.",
 		tabWork, checkCell(), widths...)
 	g.mixed, g.frozenRows, g.frozenColumns = true, frameRows, 3 // the blocks share only these columns
@@ -49,11 +49,11 @@ func (l *layout) steps() *grid {
 	for _, b := range append(l.blocks, l.lotRows) {
 		widest = max(widest, b.column(b.columns[len(b.columns)-1].key))
 	}
-	g.widths = g.widths[:max(widest, stepState)]
+	g.widths = append(g.widths, slices.Repeat([]float64{10}, max(0, widest-stepPlace))...)
 	g.printColumns = stepState
 	for _, r := range []rows{l.resultRows, l.flowRows} {
 		if !r.empty() {
-			g.flags = append(g.flags, flag{fmt.Sprintf("R%d:R%d", r.first, r.last), fmt.Sprintf("$R%d=\"%s\"", r.first, runAgain), warn})
+			g.flags = append(g.flags, flag{at(stepState, r.first) + ":" + at(stepState, r.last), fmt.Sprintf("$%s=\"%s\"", at(stepState, r.first), runAgain), warn})
 		}
 	}
 	return g
@@ -63,7 +63,7 @@ func (l *layout) steps() *grid {
 func (l *layout) stepBlock(g *grid, all []stepModel) {
 	first := g.table(g.next(), "Steps of the routes", []column{{name: "Lot"}, {name: "Route id"}, {"Route no", "1"}, {"Step", "1"}, {name: "Kind"},
 		{name: "Agent"}, {"Water in", "mg/kg"}, {"Water out", "mg/kg"}, {"Floor", "mg/kg"}, {"Hours total", "h"}, {"Hours attended", "h"},
-		{"Energy", "kWh"}, {"Cooling water", "L"}, {"Agent charged", "kg"}, {"Solvent lost", "L"}, {"Place", "1"}, {name: "Why it stopped in the run"}, {name: "State"}})
+		{"Energy", "kWh"}, {"Cooling water", "L"}, {"Agent charged", "kg"}, {"Solvent lost", "L"}, {name: "Why it stopped in the run"}, {name: "State"}, {"Place", "1"}})
 	l.flowRows = rows{first, first + len(all) - 1}
 	water := func(get func(stepModel) float64) string { return formatFor(each(all, get)...) }
 	in := water(func(s stepModel) float64 { return s.In.Water() * mgPerKg })
@@ -75,7 +75,7 @@ func (l *layout) stepBlock(g *grid, all []stepModel) {
 		from := func(unit, format string, keys ...string) cell {
 			f := ""
 			for _, key := range keys {
-				f += fmt.Sprintf("+INDEX(%s,$P%d)", l.liveArea(key), row)
+				f += fmt.Sprintf("+INDEX(%s,$%s%d)", l.liveArea(key), columnName(stepPlace), row)
 			}
 			if unit == "L" && keys[0] == "cooling" {
 				f += "*1000"
@@ -87,8 +87,9 @@ func (l *layout) stepBlock(g *grid, all []stepModel) {
 			from("mg/kg", in, "win"), from("mg/kg", out, "wout"), seen(s.Floor*mgPerKg, "mg/kg", decimals(2)),
 			from("h", decimals(2), "hours"), from("h", decimals(2), "attended", "besides"), from("kWh", decimals(2), "energy", "ovenkwh"),
 			from("L", decimals(1), "cooling"), from("kg", decimals(3), "agent"), from("L", decimals(3), "loss1", "loss2", "loss3"),
-			count(live.row - l.lotRows.rows.first + 1), text(words, why(s.Outcome)),
+			text(words, why(s.Outcome)),
 			{look: formula, formula: fmt.Sprintf("INDEX(%s,$C%d)", area(stepState, l.resultRows.first, l.resultRows.last), row)},
+			count(live.row - l.lotRows.rows.first + 1),
 		} {
 			g.put(5+c, row, x)
 		}
@@ -191,7 +192,7 @@ func (l *layout) resultBlock(g *grid) {
 	first := g.table(g.next(), "Results of the routes, per batch", []column{{name: "Lot"}, {name: "Route id"}, {"Route no", "1"}, {"Place of the last step", "1"},
 		{"Solvent out", "kg"}, {"Water out", "kg"}, {"Water out", "mg/kg"}, {"Hours of tests", "h"}, {"Hours total", "h"}, {"Litres delivered", "L"}, {"Agent", "kg"},
 		{"Followed only by the program", "1"}, {"Out of range", "1"}, {"One", "1"}})
-	for _, c := range []int{15, 16} {
+	for c := resultOne + 1; c < stepWhy; c++ {
 		g.put(c, first-1, blank(heading))
 	}
 	g.put(stepWhy, first-1, text(heading, "In words"))
