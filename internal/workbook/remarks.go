@@ -71,7 +71,7 @@ func (l *layout) listBlock(g *grid, name, a, b, c string) int {
 func (g *grid) entry(row int, l look, a, b, c string) {
 	g.put(1, row, text(l, oneLine(a)))
 	g.across(listRoutes, listText-1, row, l, b)
-	g.across(listText, len(g.widths), row, l, c)
+	g.across(listText, g.printColumns, row, l, c)
 }
 
 func (l *layout) excludedBlock(g *grid) {

@@ -115,6 +115,9 @@ func TestPropertiesHaveNoClock(t *testing.T) {
 func TestMergesHoldText(t *testing.T) {
 	for _, g := range layoutOf(t).grids {
 		for _, m := range g.merged {
+			if m.first <= g.printColumns && m.last > g.printColumns {
+				t.Errorf("%s!%s runs over the edge of the printed page", g.name, at(m.first, m.row))
+			}
 			for c := m.first; c <= m.last; c++ {
 				x := g.rows[m.row-1][c-1]
 				_, sentence := x.value.(string)
