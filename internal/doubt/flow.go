@@ -32,8 +32,7 @@ type turn struct {
 // start is the lot as delivered.
 func (l *Lot) start(run *routes.Run) *flow {
 	f := &flow{lot: l, run: run, water: make([]float64, l.n), kg: make([]float64, l.n)}
-	for i, w := range l.column(l.water()) {
-		feed := l.Case.FeedOf(w)
+	for i, feed := range l.Case.FeedsOf(l.column(l.water())) {
 		f.water[i], f.kg[i] = feed.Water(), feed.SolventKg
 	}
 	return f

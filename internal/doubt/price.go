@@ -257,13 +257,14 @@ func (f *flow) litresOf(kg []float64) []float64 {
 func (f *flow) litres() []float64 {
 	k := f.lot.Case
 	room := k.Job.Site.RoomK
+	solventKgPerL, waterKgPerL := 1e-3*k.Mixture.Solvent.DensityKgPerM3.At(room), 1e-3*k.Mixture.Water.DensityKgPerM3.At(room)
 	all := make([]float64, f.lot.n)
 	for i, kg := range f.kg {
 		w := f.water[i]
 		if math.IsInf(w, 1) {
 			w = f.run.WaterOut
 		}
-		all[i] = 1e3 * (kg/k.Mixture.Solvent.DensityKgPerM3.At(room) + kg*w/(1-w)/k.Mixture.Water.DensityKgPerM3.At(room))
+		all[i] = kg/solventKgPerL + kg*w/(1-w)/waterKgPerL
 	}
 	return all
 }

@@ -68,10 +68,13 @@ func (c *Case) Forget() { c.known.Forget() }
 // feed is the lot as delivered. The batch volume is the solvent with its
 // dissolved water; free water stands beside it.
 func feed(m *thermo.Mixture, lot job.Lot, roomK float64) steps.Lot {
-	w := lot.Water
-	volumePerKg := w/m.Water.DensityKgPerM3.At(roomK) + (1-w)/m.Solvent.DensityKgPerM3.At(roomK)
-	mass := lot.BatchM3 / volumePerKg
-	free := lot.FreeWaterM3 * m.Water.DensityKgPerM3.At(roomK)
+	return delivered(&lot, lot.Water, m.Water.DensityKgPerM3.At(roomK), m.Solvent.DensityKgPerM3.At(roomK), roomK)
+}
+
+// delivered is a lot with w kg/kg of dissolved water.
+func delivered(lot *job.Lot, w, waterKgPerM3, solventKgPerM3, roomK float64) steps.Lot {
+	mass := lot.BatchM3 / (w/waterKgPerM3 + (1-w)/solventKgPerM3)
+	free := lot.FreeWaterM3 * waterKgPerM3
 	return steps.Lot{SolventKg: mass * (1 - w), WaterKg: mass*w + free, TempK: roomK}
 }
 

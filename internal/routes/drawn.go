@@ -226,10 +226,16 @@ func (c *Case) QuickReactive(run *Run, place int, holds *steps.Solubilities) *st
 }
 
 // FeedOf is the lot as delivered with another content of dissolved water.
-func (c *Case) FeedOf(water float64) steps.Lot {
-	lot := c.Lot
-	lot.Water = water
-	return feed(c.Mixture, lot, c.Job.Site.RoomK)
+func (c *Case) FeedOf(water float64) steps.Lot { return c.FeedsOf([]float64{water})[0] }
+
+// FeedsOf are lots as delivered, each with its content of dissolved water.
+func (c *Case) FeedsOf(water []float64) []steps.Lot {
+	roomK, feeds := c.Job.Site.RoomK, make([]steps.Lot, len(water))
+	waterKgPerM3, solventKgPerM3 := c.Mixture.Water.DensityKgPerM3.At(roomK), c.Mixture.Solvent.DensityKgPerM3.At(roomK)
+	for i, w := range water {
+		feeds[i] = delivered(&c.Lot, w, waterKgPerM3, solventKgPerM3, roomK)
+	}
+	return feeds
 }
 
 // WithPractice is the case with other operating facts.

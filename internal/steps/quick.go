@@ -2,6 +2,7 @@ package steps
 
 import (
 	"math"
+	"sort"
 
 	"parch/internal/thermo"
 )
@@ -24,7 +25,7 @@ type Aside struct {
 type quickSorption struct {
 	pair             thermo.Isothermal
 	tempK, lnPsat    float64
-	share            float64
+	lnShare          float64
 	lnLowest, lnStep float64
 	lnLoading        []float64
 }
@@ -32,7 +33,7 @@ type quickSorption struct {
 const quickPoints = 600
 
 func newQuickSorption(s *sorption) *quickSorption {
-	q := &quickSorption{pair: s.m.At(s.tempK), tempK: s.tempK, lnPsat: math.Log(s.psatWater), share: s.sorbent.CapacityShare * orOne(s.sorbent.PoreShare)}
+	q := &quickSorption{pair: s.m.At(s.tempK), tempK: s.tempK, lnPsat: math.Log(s.psatWater), lnShare: math.Log(s.sorbent.CapacityShare * orOne(s.sorbent.PoreShare))}
 	const decades = 14
 	q.lnLowest = q.lnPsat - decades*math.Ln10
 	q.lnStep = decades * math.Ln10 / (quickPoints - 1)
@@ -50,14 +51,22 @@ func (q *quickSorption) lnLoadingAt(lnP float64) (lnQ, slope float64) {
 	return q.lnLoading[i] + slope*q.lnStep*(at-float64(i)), slope
 }
 
-// lnUptake of a solution of ratio kg of water per kg of solvent.
-func (q *quickSorption) lnUptake(lnRatio, shift float64) (lnQ, slope float64) {
-	lnA, perRatio := q.pair.LnActivity(lnRatio, shift)
+// lnPAt is ln p at ln of the uptake.
+func (q *quickSorption) lnPAt(lnQ float64) float64 {
+	above := sort.SearchFloat64s(q.lnLoading, lnQ)
+	i := max(0, min(above-1, quickPoints-2))
+	return q.lnLowest + q.lnStep*(float64(i)+(lnQ-q.lnLoading[i])/(q.lnLoading[i+1]-q.lnLoading[i]))
+}
+
+// lnUptake of a solution of ratio kg of water per kg of solvent, and its slope by
+// ln(ratio).
+func (q *quickSorption) lnUptake(ratio, shift float64) (lnQ, slope float64) {
+	lnA, perRatio := q.pair.LnActivityOf(ratio, shift)
 	if lnA > 0 {
 		lnA, perRatio = 0, 0
 	}
 	lnQ, slope = q.lnLoadingAt(lnA + q.lnPsat)
-	return lnQ + math.Log(q.share), slope * perRatio
+	return lnQ + q.lnShare, slope * perRatio
 }
 
 // balance solves ln(load q(r)) = ln(take(r)) for ln r below lnHighest, where take
@@ -65,38 +74,50 @@ func (q *quickSorption) lnUptake(lnRatio, shift float64) (lnQ, slope float64) {
 //
 //	take = (S (r_0 - r) + m q_0)/m
 //
-// ok is false where the sorbent is wetter than the solution.
+// ok is false where the sorbent is wetter than the solution. Newton's method starts
+// where the sorbent has taken up all of the water and the solution is thin.
 func (q *quickSorption) balance(perSorbent, ratio0 float64, a *Aside, shift float64) (ratio float64, ok bool) {
-	lnHighest := math.Log(ratio0)
-	lnLoad := math.Log(a.Loading)
+	lnHighest, lnLoad, all := math.Log(ratio0), math.Log(a.Loading), perSorbent*ratio0+a.ResidualKgPerKg
 	gap := func(v float64) (f, slope float64) {
-		lnQ, d := q.lnUptake(v, shift)
 		r := math.Exp(v)
-		take := perSorbent*(ratio0-r) + a.ResidualKgPerKg
+		lnQ, d := q.lnUptake(r, shift)
+		take := all - perSorbent*r
 		return lnLoad + lnQ - math.Log(take), d + perSorbent*r/take
 	}
-	if f, _ := gap(lnHighest); f < 0 {
-		return ratio0, false
+	start := q.pair.Dilute(q.lnPAt(math.Log(all)-lnLoad-q.lnShare)-q.lnPsat, shift)
+	lnRatio, _ := rising(gap, math.Log(leastWater), lnHighest, start)
+	if lnHighest-lnRatio < 1e-6 {
+		if f, _ := gap(lnHighest); f < 0 {
+			return ratio0, false
+		}
 	}
-	lo, hi := math.Log(leastWater), lnHighest
-	v := lnHighest - 3
+	return math.Exp(lnRatio), true
+}
+
+// rising is where a rising function is zero between lo and hi, from a start, to 1e-9:
+// Newton's method, and the middle where that leads out. It comes to an end of the
+// range where the zero lies beyond. ok is false where it has not settled.
+func rising(f func(v float64) (value, slope float64), lo, hi, start float64) (v float64, ok bool) {
+	if v = start; !(v > lo && v < hi) {
+		v = (lo + hi) / 2
+	}
 	for range 80 {
-		f, slope := gap(v)
-		if f > 0 {
+		value, slope := f(v)
+		if value > 0 {
 			hi = v
 		} else {
 			lo = v
 		}
-		next := v - f/slope
+		next := v - value/slope
 		if !(next > lo && next < hi) {
 			next = (lo + hi) / 2
 		}
 		if math.Abs(next-v) < 1e-9 {
-			return math.Exp(next), true
+			return next, true
 		}
 		v = next
 	}
-	return math.Exp(v), true
+	return v, false
 }
 
 // QuickSoak is a soak over weighed beads, in one charge or in several equal ones
@@ -179,7 +200,7 @@ func (c *QuickColumn) Water(water, solventKg float64, a *Aside) (out float64, ok
 	q, b := c.sorption, c.bed
 	shift := a.Shift.At(q.tempK)
 	b.feed.SolventKg, b.feed.WaterKg = solventKg, solventKg*water/(1-water)
-	lnFed, _ := q.lnUptake(math.Log(water/(1-water)), shift)
+	lnFed, _ := q.lnUptake(water/(1-water), shift)
 	spare := a.Loading*math.Exp(lnFed) - a.ResidualKgPerKg
 	if !(spare > 0) {
 		return water, false
@@ -203,24 +224,12 @@ func (c *QuickColumn) Water(water, solventKg float64, a *Aside) (out float64, ok
 
 // floor is the solution in equilibrium with what is on the sorbent already.
 func (q *quickSorption) floor(a *Aside, shift, highest float64) (ratio float64, ok bool) {
-	lo, hi := math.Log(leastWater), math.Log(highest)
-	v := hi - 3
 	want := math.Log(a.ResidualKgPerKg / a.Loading)
-	for range 80 {
-		lnQ, slope := q.lnUptake(v, shift)
-		if lnQ > want {
-			hi = v
-		} else {
-			lo = v
-		}
-		next := v - (lnQ-want)/slope
-		if !(next > lo && next < hi) {
-			next = (lo + hi) / 2
-		}
-		if math.Abs(next-v) < 1e-9 {
-			return math.Exp(next), true
-		}
-		v = next
+	above := func(v float64) (f, slope float64) {
+		lnQ, d := q.lnUptake(math.Exp(v), shift)
+		return lnQ - want, d
 	}
-	return math.Exp(v), false
+	start := q.pair.Dilute(q.lnPAt(want-q.lnShare)-q.lnPsat, shift)
+	lnRatio, ok := rising(above, math.Log(leastWater), math.Log(highest), start)
+	return math.Exp(lnRatio), ok
 }

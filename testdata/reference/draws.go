@@ -145,8 +145,18 @@ func (p plan) common(l *doubt.Lot, shown int) map[string]any {
 
 // draws takes a soak through what is not known exactly: the water it leaves and the
 // cost of a litre in each draw. The draws themselves are handed to the other side,
-// which solves them one by one.
+// which solves them one by one; neither side's time counts the making of them.
 func draws(cat *catalog.Catalog) (problem, error) {
+	return drawsOf(cat, "draw of a soak", func(p plan, d drawn) error { _, err := d.lot.Through(&p.run); return err })
+}
+
+// madeDraws are the same; the time here counts the making of the draws too, which
+// the other side is spared.
+func madeDraws(cat *catalog.Catalog) (problem, error) {
+	return drawsOf(cat, "draw made too", func(p plan, _ drawn) error { _, err := p.through(); return err })
+}
+
+func drawsOf(cat *catalog.Catalog, name string, timed func(plan, drawn) error) (problem, error) {
 	const shown = 200
 	p, err := planned(cat, soaked)
 	if err != nil {
@@ -156,13 +166,13 @@ func draws(cat *catalog.Catalog) (problem, error) {
 	if err != nil {
 		return problem{}, err
 	}
-	t, err := seconds(func() error { _, err := p.through(); return err })
+	t, err := seconds(func() error { return timed(p, d) })
 	answer := map[string]float64{}
 	for i := range shown {
 		at := i * allDraws / shown
 		answer[key("water", i)], answer[key("cost", i)] = d.out.Water[at], d.out.CostPerLitre[at]
 	}
-	return problem{Name: "draw of a soak", SecondsPerOp: t / allDraws, Answer: answer, Input: p.common(d.lot, shown)}, err
+	return problem{Name: name, SecondsPerOp: t / allDraws, Answer: answer, Input: p.common(d.lot, shown)}, err
 }
 
 // trapDraws are those of a trap before the soak: the water it leaves, the hours.

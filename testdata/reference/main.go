@@ -38,7 +38,7 @@ func run() error {
 		return err
 	}
 	var all []problem
-	for _, solve := range []func(*catalog.Catalog) (problem, error){trap, soak, draws, trapDraws, bill, book} {
+	for _, solve := range []func(*catalog.Catalog) (problem, error){trap, soak, draws, madeDraws, trapDraws, bill, book} {
 		p, err := solve(cat)
 		if err != nil {
 			return err

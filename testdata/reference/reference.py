@@ -258,7 +258,7 @@ def workbook(q):
     return write
 
 
-SOLVERS = {"trap": trap, "soak": soak, "draw of a soak": draw, "draw of trap+soak": trap_draw, "bill": bill}
+SOLVERS = {"trap": trap, "soak": soak, "draw of a soak": draw, "draw made too": draw, "draw of trap+soak": trap_draw, "bill": bill}
 
 
 def timed(solve):
