@@ -202,8 +202,11 @@ func TestIsothermalIsThePair(t *testing.T) {
 					const step = 1e-5
 					above, _ := quick.LnActivity(lnRatio+step, shift)
 					below, _ := quick.LnActivity(lnRatio-step, shift)
-					if want := (above - below) / (2 * step); math.Abs(slope-want) > 1e-9*want {
+					if want := (above - below) / (2 * step); math.Abs(slope-want) > 1e-9 {
 						t.Errorf("%s, %g K, %g: slope %.12g, want %.12g", solvent, tK, w, slope, want)
+					}
+					if w > 0.01 { // beyond what is looked for there
+						continue
 					}
 					back, ok := quick.LnRatioAt(got, shift, 0.01)
 					if !ok || math.Abs(back-lnRatio) > 1e-7 {
