@@ -266,6 +266,16 @@ func showPurchases(r *study.Report) []purchaseOut {
 	return all
 }
 
+// floorShown is zero for what is no more than the lower end of a search: that of a
+// sorbent that was stated to be empty.
+func floorShown(floor float64) float64 {
+	const least = 1e-15 // kg/kg
+	if floor < least {
+		return 0
+	}
+	return floor
+}
+
 func showStep(o *steps.Outcome) stepOut {
 	return stepOut{
 		Kind:          o.Kind,
@@ -273,7 +283,7 @@ func showStep(o *steps.Outcome) stepOut {
 		Carrier:       known(o.Carrier),
 		WaterIn:       number(o.In.Water() * mgPerKg),
 		WaterOut:      number(o.Out.Water() * mgPerKg),
-		Floor:         number(o.Floor * mgPerKg),
+		Floor:         number(floorShown(o.Floor) * mgPerKg),
 		WhyItStops:    o.Why,
 		HoursTotal:    number(o.HoursTotal),
 		HoursAttended: number(o.HoursAttended),

@@ -2,11 +2,13 @@ package steps_test
 
 import (
 	"errors"
+	"fmt"
 	"math"
 	"testing"
 
 	"pgregory.net/rapid"
 
+	"parch/internal/quantity"
 	"parch/internal/steps"
 )
 
@@ -60,17 +62,32 @@ func TestCapacityIsSeldomTheLimit(t *testing.T) {
 	}
 }
 
+// With 150 g/L the floor of toluene, and what a month leaves of 480 mg/kg, fall more
+// than tenfold once the residual loading is zero, and the outcome says which assumption
+// rules and what it would be without (needs no outside value).
 func TestResidualLoadingRulesTheFloor(t *testing.T) {
 	m := mixture(t, "toluene")
-	floor := func(residual float64) float64 {
-		o, err := steps.SoakOver(m, litres(m, 1, 500e-6), 150, 24*3600, sieve3A(t, residual), bottle(t, "toluene", 0.08))
+	month := func(residual float64) steps.Outcome {
+		o, err := steps.SoakOver(m, litres(m, 1, 480e-6), 150, 30*24*3600, sieve3A(t, residual), bottle(t, "toluene", 0.08))
 		if err != nil {
 			t.Fatal(err)
 		}
-		return o.Floor
+		return o
 	}
-	if dry, usual, tin := floor(0.0001), floor(0.02), floor(0.075); !(dry*10 < usual && usual*5 < tin) {
-		t.Errorf("floors %g, %g, %g: residual loading should move them by orders of magnitude", dry, usual, tin)
+	usual, empty, tin := month(0.02), month(0), month(0.075)
+	if !(usual.Floor > 10*empty.Floor && tin.Floor > 5*usual.Floor) {
+		t.Errorf("floors %g, %g, %g", empty.Floor, usual.Floor, tin.Floor)
+	}
+	if !(usual.Out.Water() > 10*empty.Out.Water()) {
+		t.Errorf("2 g/100 g leave %g, an empty sieve %g: want more than ten times", usual.Out.Water(), empty.Out.Water())
+	}
+	leaves := func(o steps.Outcome) string { return quantity.FormatWater(o.Figure("equilibrium at this dose") / 1e6) }
+	near(t, "an empty sorbent, told beside", usual.Figure("equilibrium if the sorbent were empty"), empty.Figure("equilibrium at this dose"), 1e-9)
+	if want := fmt.Sprintf("residual loading: 2 g/100 g at the start leave %s at this dose, an empty sorbent %s", leaves(usual), leaves(empty)); usual.RuledBy != want {
+		t.Errorf("ruled by %q, want %q", usual.RuledBy, want)
+	}
+	if want := fmt.Sprintf("isotherm: an equilibrium of %s at this dose", leaves(empty)); empty.RuledBy != want {
+		t.Errorf("ruled by %q, want %q", empty.RuledBy, want)
 	}
 }
 
@@ -111,10 +128,12 @@ func TestAWetSieveIsRefused(t *testing.T) {
 	}
 }
 
-// More sieve, more time, a drier sieve or a drier start never give wetter
-// solvent; the balances close; nothing goes below the floor.
+// More sieve, more time, a drier sieve or a drier start never give wetter solvent,
+// still or stirred, over any sorbent; the balances close to 1e-10; nothing goes below
+// the floor.
 func TestSoakIsMonotone(t *testing.T) {
 	solvents := []string{"toluene", "cyclohexane", "dichloromethane", "ethyl-acetate", "tetrahydrofuran", "acetonitrile"}
+	sorbents := []string{"sieve-3a", "sieve-4a", "sieve-5a", "sieve-13x", "silica-gel", "alumina"}
 	rapid.Check(t, func(rt *rapid.T) {
 		solvent := rapid.SampledFrom(solvents).Draw(rt, "solvent")
 		m := mixture(t, solvent)
@@ -122,9 +141,16 @@ func TestSoakIsMonotone(t *testing.T) {
 		dose := rapid.Float64Range(5, 250).Draw(rt, "dose")
 		hours := rapid.Float64Range(1, 200).Draw(rt, "hours")
 		residual := rapid.Float64Range(0, 0.03).Draw(rt, "residual")
-		depth := rapid.Float64Range(0.03, 0.8).Draw(rt, "depth")
+		vessel := bottle(t, solvent, rapid.Float64Range(0.03, 0.8).Draw(rt, "depth"))
+		if rapid.Bool().Draw(rt, "stirred") {
+			vessel = stirred(t, solvent)
+		}
+		sorbent := sieve3A(t, 0)
+		sorbent.Key = rapid.SampledFrom(sorbents).Draw(rt, "sorbent")
+		sorbent.Loading = shelf(t).Agents[sorbent.Key].Isotherm.LoadingKgPerKg
 		run := func(water, dose, hours, residual float64) (steps.Outcome, bool) {
-			o, err := steps.SoakOver(m, litres(m, 5, water), dose, hours*3600, sieve3A(t, residual), bottle(t, solvent, depth))
+			sorbent.ResidualKgPerKg = residual
+			o, err := steps.SoakOver(m, litres(m, 5, water), dose, hours*3600, sorbent, vessel)
 			if errors.Is(err, steps.ErrWetSieve) {
 				return o, false
 			}
