@@ -57,7 +57,7 @@ func (r *refluxing) march(rate flow, progress func(*state, *condensed) float64, 
 		p.accepted(off, after, quicker, carrierLongestStep*total(r.s.pot))
 	}
 	return fmt.Errorf("%w: %s and %s, %d steps, %.3g mg/kg of water in the pot", ErrUnsolved,
-		r.m.Pure[inSolvent].Key, r.m.Pure[inCarrier].Key, len(r.course), r.dryness(&r.s)*mgPerKg)
+		r.m.Pure[inSolvent].Called(), r.m.Pure[inCarrier].Called(), len(r.course), r.dryness(&r.s)*mgPerKg)
 }
 
 // endStep is the step that is short enough to end with. Progress jumps to infinity

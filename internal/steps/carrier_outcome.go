@@ -140,7 +140,7 @@ func (r *refluxing) warn(o *Outcome) {
 
 // stripped says where the stripping ends.
 func (r *refluxing) stripped() string {
-	limit, key := quantity.FormatWater(r.plan.CarrierLimit), r.m.Pure[inCarrier].Key
+	limit, key := quantity.FormatWater(r.plan.CarrierLimit), r.m.Pure[inCarrier].Called()
 	if r.stripWhy == AtHeel {
 		left := r.kg(r.s.pot[inCarrier], inCarrier) / r.massKg(r.s.pot)
 		return fmt.Sprintf("stripping ends at the heel with %s of %s left, above the limit of %s", quantity.FormatWater(left), key, limit)

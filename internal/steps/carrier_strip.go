@@ -3,6 +3,8 @@ package steps
 import (
 	"fmt"
 	"math"
+
+	"parch/internal/quantity"
 )
 
 // strip draws carrier off until the product holds no more than its limit.
@@ -30,8 +32,8 @@ func (r *refluxing) strip() error {
 		return err
 	}
 	if after := carrierShare(&r.s); after >= before {
-		return fmt.Errorf("%w: the dried pot holds %.3g %% %s before stripping and %.3g %% after it: the solvent leaves first; take less carrier",
-			ErrNoCarrier, 100*before, r.m.Pure[inCarrier].Key, 100*after)
+		return fmt.Errorf("%w: the dried pot holds %s %s before stripping and %s after it: the solvent leaves first; take less carrier",
+			ErrNoCarrier, percent(before), r.m.Pure[inCarrier].Called(), percent(after))
 	} else if after > r.plan.CarrierLimit*(1+1e-4) {
 		r.stripWhy = AtHeel
 	}
@@ -46,8 +48,17 @@ func (r *refluxing) strippable(potShare float64) error {
 		return err
 	}
 	if head := r.m.Mass(c.head.Y)[inCarrier]; head <= potShare {
-		return fmt.Errorf("%w: the dried pot holds %.3g %% %s, its vapour %.3g %%: the solvent would leave first; take less carrier",
-			ErrNoCarrier, 100*potShare, r.m.Pure[inCarrier].Key, 100*head)
+		return fmt.Errorf("%w: the dried pot holds %s %s, its vapour %s of it: the solvent would leave first; take less carrier",
+			ErrNoCarrier, percent(potShare), r.m.Pure[inCarrier].Called(), percent(head))
 	}
 	return nil
+}
+
+// percent prints a share of the mass; what is too little to be found is none.
+func percent(share float64) string {
+	const found = 1e-7
+	if share < found {
+		return "no"
+	}
+	return quantity.Significant(100*share, 3) + " %"
 }

@@ -214,8 +214,8 @@ func (r *refluxing) firstLayers() error {
 	l := r.m.Settle(c.split, r.eq.ReceiverK)
 	if l.Return == thermo.None {
 		w := r.m.Mass(c.head.Y)
-		return fmt.Errorf("%w: %s; it holds %.3g %% water, %.3g %% %s and %.3g %% %s", ErrNoCarrier, l.Reason,
-			100*w[inWater], 100*w[inSolvent], r.m.Pure[inSolvent].Key, 100*w[inCarrier], r.m.Pure[inCarrier].Key)
+		return fmt.Errorf("%w: %s; it holds %s water, %s %s and %s %s", ErrNoCarrier, l.Reason,
+			percent(w[inWater]), percent(w[inSolvent]), r.m.Pure[inSolvent].Called(), percent(w[inCarrier]), r.m.Pure[inCarrier].Called())
 	}
 	r.returns = l.Return
 	if !r.fits(l.Return) {

@@ -273,7 +273,7 @@ func (d *drawing) checkTemperatures() error {
 	}
 	if hottest := math.Max(d.startK, d.eq.DryK); d.rig.HighestPotK > 0 && hottest > d.rig.HighestPotK {
 		return fmt.Errorf("%w: the pot reaches %.1f °C at %.4g kPa, the limit is %.1f °C; dry %s boils there at %.3g kPa",
-			ErrNoForerun, hottest-273.15, kPa, d.rig.HighestPotK-273.15, d.m.Solvent.Key, d.m.Solvent.VapourPressurePa.At(d.rig.HighestPotK)/1e3)
+			ErrNoForerun, hottest-273.15, kPa, d.rig.HighestPotK-273.15, d.m.Solvent.Called(), d.m.Solvent.VapourPressurePa.At(d.rig.HighestPotK)/1e3)
 	}
 	return nil
 }

@@ -81,7 +81,7 @@ func (d *drawing) march(end, lnHeel float64, beyond func() float64) error {
 		}
 	}
 	return fmt.Errorf("the distillation of %s did not end in %d steps: %.3g of the charge left at %.3g mol/mol water",
-		d.m.Solvent.Key, mostSteps, math.Exp(d.lnLeft), d.at.x)
+		d.m.Solvent.Called(), mostSteps, math.Exp(d.lnLeft), d.at.x)
 }
 
 // advance takes one step of the march; off is the error of ln N in it.

@@ -103,6 +103,6 @@ func (b *bath) remarkCondensation(o *Outcome, eq, timeS, doseKgPerM3 float64) {
 		Figure{"driest after", "h", bestS / secondsPerHour})
 	if timeS > bestS {
 		o.Warnings = append(o.Warnings, fmt.Sprintf("%s condenses on the sorbent and makes water: driest, at %s, after %.2g h; decant then",
-			b.m.Solvent.Key, quantity.FormatWater(b.course(eq, doseKgPerM3, bestS)), bestS/secondsPerHour))
+			b.m.Solvent.Called(), quantity.FormatWater(b.course(eq, doseKgPerM3, bestS)), bestS/secondsPerHour))
 	}
 }

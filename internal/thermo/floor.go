@@ -48,7 +48,7 @@ func (m *Mixture) TrapFloor(receiverK, pressurePa float64) (Floor, error) {
 		return Floor{}, err
 	}
 	if receiverK >= wet.TempK {
-		return Floor{}, &WarmReceiver{m.Solvent.Key, receiverK, wet.TempK, pressurePa}
+		return Floor{}, &WarmReceiver{m.Solvent.Called(), receiverK, wet.TempK, pressurePa}
 	}
 	var failed error
 	guess := dryBoil
