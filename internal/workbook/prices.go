@@ -82,7 +82,10 @@ func priceMark(p costs.Price) string {
 }
 
 func (l *layout) priceFormat() string {
-	return exactFormat(each(l.prices, func(p costs.Price) float64 { return float(p.PerUnit) }))
+	if l.pricesShown == "" {
+		l.pricesShown = exactFormat(each(l.prices, func(p costs.Price) float64 { return float(p.PerUnit) }))
+	}
+	return l.pricesShown
 }
 
 // changedRow counts the inputs and prices that differ from the run, for the

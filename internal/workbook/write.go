@@ -158,6 +158,7 @@ type layout struct {
 	along         map[int]along // by lot
 	alongHead     int
 	waterShown    string // format of the water that the routes leave
+	pricesShown   string // format of prices
 	rangeRows     rows   // ranges
 }
 
