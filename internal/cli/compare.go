@@ -25,7 +25,7 @@ const defaultWorkbook = "drying-routes.xlsx"
 // Draws that are made where no other number is asked for, and the fewest that say
 // anything of a twentieth.
 const (
-	usualDraws = 2000
+	usualDraws = spread.UsualDraws
 	usualSeed  = 1
 	leastDraws = 100
 )

@@ -2,7 +2,6 @@ package report
 
 import (
 	"fmt"
-	"math"
 	"slices"
 	"strings"
 
@@ -33,43 +32,24 @@ func (out *routeOut) ranges(r *study.Route) {
 	}
 }
 
-// supported prints a number with no more digits than its sampling error bears: in
-// steps of 1, 2 or 5 that are four standard errors or more, and two digits at most.
-func supported(x, err float64) string {
-	if x == 0 || math.IsNaN(x) || math.IsInf(x, 0) {
-		return quantity.Significant(x, 2)
-	}
-	step := math.Pow(10, math.Floor(math.Log10(math.Abs(x)))-1)
-	for k := 0; step < 4*err; k++ {
-		step *= [...]float64{2, 2.5, 2}[k%3]
-	}
-	return quantity.Significant(math.Round(x/step)*step, 3)
-}
-
-// band prints what nine draws in ten lie in.
+// band prints what nine draws in ten lie in, as finely as the draws bear it.
 func band(b spread.Band, scale float64) string {
-	low, high := supported(b.Low*scale, b.LowError*scale), supported(b.High*scale, b.HighError*scale)
+	low, high := quantity.Significant(b.Low*scale, 2), quantity.Significant(b.High*scale, 2)
 	if low == high {
 		return "about " + low
 	}
 	return low + " to " + high
 }
 
-// chanceOf prints a chance in steps that its sampling error bears.
-func chanceOf(chance float64, draws int) string {
+// chanceOf prints a chance that is reached at least.
+func chanceOf(chance float64) string {
 	switch {
 	case chance >= 0.99:
 		return "over 99 %"
 	case chance <= 0.01:
 		return "under 1 %"
 	}
-	step := 0.01
-	for _, s := range []float64{0.02, 0.05, 0.1} {
-		if step < 4*spread.QuantileError(chance, draws) {
-			step = s
-		}
-	}
-	return fmt.Sprintf("%.0f %%", 100*math.Max(step, math.Floor(chance/step+1e-9)*step))
+	return "at least " + quantity.FormatShare(chance)
 }
 
 // sure says how sure the best route is, what is cheaper and less sure, and what the
@@ -79,8 +59,8 @@ func (p *page) sure(r *study.Report, l *study.Lot) {
 	if best == nil || best.Range == nil || best.Range.Chance == nil {
 		return
 	}
-	text := fmt.Sprintf("In %s draws of what is not known exactly (seed %d) it reaches the limit in %s; nine draws in ten leave %s mg/kg",
-		thousands(r.Draws), r.Seed, chanceOf(*best.Range.Chance, r.Draws), band(best.Range.Water, mgPerKg))
+	text := fmt.Sprintf("In %s draws of what is not known exactly (seed %d), rounded to what they bear, it reaches the limit in %s; nine draws in ten leave %s mg/kg",
+		thousands(r.Draws), r.Seed, chanceOf(*best.Range.Chance), band(best.Range.Water, mgPerKg))
 	if c := best.Range.CostPerLitre; c != nil {
 		text += fmt.Sprintf(" at %s %s a litre", band(*c, 1), r.Job.Currency)
 	}
@@ -97,7 +77,7 @@ func (p *page) sure(r *study.Report, l *study.Lot) {
 		if u.Bill.Priced() {
 			cost = fmt.Sprintf(", at %s %s a litre,", money(u.Bill.WrittenPerLitre()), r.Job.Currency)
 		}
-		p.say(3, 0, "Before it in the ranking and not recommended: %s%s as it reaches the limit in %s only.", u.ID, cost, chanceOf(*u.Range.Chance, r.Draws))
+		p.say(3, 0, "Before it in the ranking and not recommended: %s%s as it reaches the limit in %s only.", u.ID, cost, chanceOf(*u.Range.Chance))
 	}
 	if !best.Recommended {
 		p.say(3, 0, "No route is as sure as the %s asked for.", quantity.FormatShare(r.Job.Assurance))
@@ -123,11 +103,11 @@ func thousands(n int) string {
 }
 
 // chanceCell is the chance of a route in the ranking.
-func chanceCell(r *study.Report, route *study.Route) string {
+func chanceCell(route *study.Route) string {
 	if route.Range == nil || route.Range.Chance == nil {
 		return ""
 	}
-	return strings.TrimSuffix(chanceOf(*route.Range.Chance, r.Draws), " %")
+	return strings.TrimPrefix(strings.TrimSuffix(chanceOf(*route.Range.Chance), " %"), "at least ")
 }
 
 // sureEnough keeps the routes that are recommended, where any is.

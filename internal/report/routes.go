@@ -180,7 +180,7 @@ func (p *page) ranking(r *study.Report, l *study.Lot) {
 			marked(route, route.Bill.PerBatch), marked(route, route.Bill.WrittenPerLitre()),
 		}
 		if r.Draws > 0 {
-			rows[i] = append(rows[i], chanceCell(r, route))
+			rows[i] = append(rows[i], chanceCell(route))
 		}
 	}
 	p.line("")

@@ -6,6 +6,7 @@ package spread
 import (
 	"fmt"
 	"hash/fnv"
+	"math"
 	"math/rand/v2"
 )
 
@@ -21,7 +22,8 @@ type Draws struct {
 
 // Draw fills n draws by Latin hypercube sampling: each input's range of
 // probability is cut into n equal parts and each part is hit once, in an order of
-// its own (McKay, Beckman & Conover, Technometrics 21 (1979) 239). The same seed
+// its own (McKay, Beckman & Conover, Technometrics 21 (1979) 239); the first half of
+// them are the draws of half as many. The same seed
 // gives the same draws, and an input's draws depend on its name alone and not on
 // what is drawn beside it.
 func Draw(inputs []Input, n int, seed uint64) (*Draws, error) {
@@ -51,11 +53,49 @@ func column(in Input, n int, seed uint64) []float64 {
 	name.Write([]byte(in.Name))
 	source := rand.New(rand.NewPCG(seed, name.Sum64()))
 	values := make([]float64, n)
-	for i, part := range source.Perm(n) {
-		within := 1e-9 + (1-2e-9)*source.Float64() // never at an end: there a quantile may be without bound
-		values[i] = in.Quantile((float64(part) + within) / float64(n))
+	for i, at := range evenly(n, source) {
+		within := math.Min(1-atAnEnd, math.Max(atAnEnd, at.within))
+		values[i] = in.Quantile((float64(at.part) + within) / float64(n))
 	}
 	return values
+}
+
+// atAnEnd keeps draws off the ends of their part: there a quantile may be without bound.
+const atAnEnd = 1e-9
+
+// place is one of n equal parts of the range of probability, and where in it.
+type place struct {
+	part   int
+	within float64
+}
+
+// evenly hits each of n parts once. The first half of an even number of draws are the
+// draws of half as many, in parts half as wide; the others take the parts left free.
+// So doubling the draws adds to those that there are.
+func evenly(n int, source *rand.Rand) []place {
+	all := make([]place, 0, n)
+	if n%2 == 1 {
+		for _, part := range source.Perm(n) {
+			all = append(all, place{part, source.Float64()})
+		}
+		return all
+	}
+	taken := make([]bool, n)
+	for _, p := range evenly(n/2, source) {
+		p.part, p.within = 2*p.part, 2*p.within
+		if p.within >= 1 {
+			p.part, p.within = p.part+1, p.within-1
+		}
+		all, taken[p.part] = append(all, p), true
+	}
+	for part := range n {
+		if !taken[part] {
+			all = append(all, place{part, source.Float64()})
+		}
+	}
+	added := all[n/2:]
+	source.Shuffle(len(added), func(i, j int) { added[i], added[j] = added[j], added[i] })
+	return all
 }
 
 // Len is the number of draws.

@@ -14,9 +14,13 @@ type Band struct {
 	LowError, MedianError, HighError float64 // standard errors of the sampling
 }
 
+// errorWindow is how many standard errors of a share its quantile is looked at aside.
+const errorWindow = 3
+
 // BandOf sums up values. NaN entries (a route that failed in that draw) count as
-// above everything. The error of a quantile is half the way between the values that
-// stand one standard error of its share to either side.
+// above everything. The error of a quantile is a sixth of the way between the values
+// that stand three standard errors of its share to either side: so far that it is
+// itself known to a tenth or so.
 func BandOf(values []float64) Band {
 	sorted := slices.Clone(values)
 	for i, v := range sorted {
@@ -27,8 +31,8 @@ func BandOf(values []float64) Band {
 	sort.Float64s(sorted)
 	q := func(p float64) float64 { return stat.Quantile(p, stat.LinInterp, sorted, nil) }
 	e := func(p float64) float64 {
-		aside := QuantileError(p, len(sorted))
-		return (q(math.Min(1, p+aside)) - q(math.Max(0, p-aside))) / 2
+		aside := errorWindow * QuantileError(p, len(sorted))
+		return (q(math.Min(1, p+aside)) - q(math.Max(0, p-aside))) / (2 * errorWindow)
 	}
 	return Band{q(0.05), q(0.5), q(0.95), e(0.05), e(0.5), e(0.95)}
 }

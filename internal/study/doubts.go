@@ -20,10 +20,10 @@ import (
 
 // searchDraws are those by which settings are made sure. Their number is fixed, so
 // that settings do not depend on how many draws the ranges take.
-const searchDraws = 500
+const searchDraws = 1000
 
 // searchMargin is how far above the assurance the search goes with so few.
-const searchMargin = 0.015
+const searchMargin = 0.02
 
 // doubts are the draws of a lot; nil where none are asked for.
 type doubts struct {
@@ -107,13 +107,14 @@ func (d *doubts) judge(ctx context.Context, all []Route, failed *job.FailedBatch
 		if err != nil {
 			return fmt.Errorf("%s: %w", r.ID, err)
 		}
-		r.Range = &Range{Chance: &chance}
+		told := spread.ToldChance(chance, d.assurance, d.all.Draws())
+		r.Range = &Range{Chance: &told}
 		r.Recommended = r.Run.Meets && chance >= d.assurance
 		if r.Run.Meets && !r.Recommended {
-			r.WhyNot = fmt.Sprintf("its chance of the target, %s, is under the assurance of %s", quantity.FormatShare(math.Round(1000*chance)/1000), quantity.FormatShare(d.assurance))
+			r.WhyNot = fmt.Sprintf("its chance of the target, %s, is under the assurance of %s", quantity.FormatShare(told), quantity.FormatShare(d.assurance))
 		}
 		if failed != nil {
-			perBatch := failed.Amount.Mul(decimal.NewFromFloat(1 - chance)).Round(2)
+			perBatch := failed.Amount.Mul(decimal.NewFromFloat(1 - told)).Round(2)
 			r.Miss = &Miss{PerBatch: perBatch, PerLitre: perBatch.DivRound(decimal.NewFromFloat(r.Run.LitresDelivered), 6)}
 		}
 		return nil
@@ -136,9 +137,9 @@ func (d *doubts) spread(ctx context.Context, l *Lot) error {
 		if r.Range == nil {
 			r.Range = &Range{}
 		}
-		r.Range.Water, r.Range.Hours = spread.BandOf(capped(o.Water, l.Job.Water)), spread.BandOf(o.Hours)
+		r.Range.Water, r.Range.Hours = spread.Told(capped(o.Water, l.Job.Water)), spread.Told(o.Hours)
 		if o.CostPerLitre != nil {
-			band := spread.BandOf(o.CostPerLitre)
+			band := spread.Told(o.CostPerLitre)
 			r.Range.CostPerLitre = &band
 		}
 		return nil
@@ -183,14 +184,14 @@ func (d *doubts) cheapest(l *Lot, outcomes []*doubt.Outcome) {
 		}
 	}
 	for k, n := range wins {
-		l.Routes[k].Range.CheapestShare = float64(n) / float64(d.all.Draws())
+		l.Routes[k].Range.CheapestShare = spread.ToldShare(float64(n)/float64(d.all.Draws()), d.all.Draws())
 	}
 }
 
 // Movers shown of each result, and the weakest correlation that is told.
 const (
 	mostMovers  = 3
-	leastMoving = 0.1
+	leastMoving = 0.2 // as it is told
 )
 
 // movers ranks what moves the results of each route, and for the lot what moves
@@ -213,7 +214,7 @@ func (d *doubts) movers(ctx context.Context, l *Lot, outcomes []*doubt.Outcome) 
 			var all []Mover
 			mine := spread.RanksOf(result.values)
 			for k, in := range inputs {
-				if c := ranks[k].Correlation(mine); math.Abs(c) >= leastMoving {
+				if c := spread.ToldCorrelation(ranks[k].Correlation(mine)); math.Abs(c) >= leastMoving {
 					all = append(all, Mover{Of: result.of, Input: in.Name, Why: in.Why, Correlation: c})
 				}
 			}

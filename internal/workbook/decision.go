@@ -128,7 +128,7 @@ func (l *layout) placeRow(g *grid, row, place int, what string, lot *lotModel) {
 		{decideHigh, ranged, rangeLitre + 2, l.money("L"), moneyFormat, func(r *routeModel) float64 { return tidy(r.bands()[1].High) }},
 		{decideAttended, compared, compareAttended, "h", decimals(2), func(r *routeModel) float64 { return tidy(r.Run.HoursAttended) }},
 		{decideWater, compared, compareWater, "mg/kg", decimals(2), func(r *routeModel) float64 { return r.waterOut }},
-		{decideChance, ranged, rangeChance, "%", "0.0", func(r *routeModel) float64 { return tidy(r.chance()) }},
+		{decideChance, ranged, rangeChance, "%", "0", func(r *routeModel) float64 { return tidy(r.chance()) }},
 	})
 }
 

@@ -101,7 +101,7 @@ func (r *routeModel) sure(assurance float64) string {
 
 func (l *layout) rangeRow(g *grid, i int, r *routeModel) {
 	row := l.rangeRows.at(i)
-	g.putRow(row, text(words, r.lot.Job.Name), text(words, r.ID), seen(r.chance(), "%", "0.0"),
+	g.putRow(row, text(words, r.lot.Job.Name), text(words, r.ID), seen(r.chance(), "%", "0"),
 		text(program, r.sure(l.report.Job.Assurance)))
 	units, formats := [3]string{"mg/kg", l.money("L"), "h"}, [3]string{decimals(2), moneyFormat, decimals(2)}
 	for k, b := range r.bands() {
@@ -113,7 +113,7 @@ func (l *layout) rangeRow(g *grid, i int, r *routeModel) {
 	if r.Range != nil {
 		share = 100 * r.Range.CheapestShare
 	}
-	g.put(rangeShare, row, seen(share, "%", "0.0"))
+	g.put(rangeShare, row, seen(share, "%", "0"))
 	var rank any = ""
 	if r.rank > 0 && r.sure(l.report.Job.Assurance) != "no" {
 		rank = float64(r.rank)
@@ -134,7 +134,7 @@ func (l *layout) moverBlock(g *grid) {
 			continue
 		}
 		for _, m := range best.Range.Movers {
-			g.putRow(row, text(words, lot.Job.Name), text(words, best.ID), text(words, m.Of), number(m.Correlation, "1").shown("0.00"))
+			g.putRow(row, text(words, lot.Job.Name), text(words, best.ID), text(words, m.Of), number(m.Correlation, "1").shown("0.0"))
 			g.across(5, 8, row, words, m.Input)
 			g.across(9, 15, row, words, m.Why)
 			row++
