@@ -24,11 +24,14 @@ func told(x, err float64) float64 {
 	if x == 0 || math.IsNaN(x) || math.IsInf(x, 0) {
 		return x
 	}
+	if math.IsNaN(err) || math.IsInf(err, 0) { // next to draws that fail
+		err = 0
+	}
 	power := math.Floor(math.Log10(math.Abs(x))) - 1
 	for {
 		for _, s := range []float64{1, 2, 5} {
 			unit := math.Pow(10, math.Abs(power)) // exact, so that 0.3 comes out as such
-			if step := s * math.Pow(10, power); step >= errorsAStep*err || math.IsInf(err, 1) {
+			if step := s * math.Pow(10, power); step >= errorsAStep*err {
 				n := math.Round(x/step) * s
 				if power < 0 {
 					return n / unit
@@ -54,11 +57,11 @@ func shareStep(p float64, draws int) float64 {
 // ToldChance is a chance that is reached at least, as far as the draws bear it. One
 // that reaches level is not told as less.
 func ToldChance(p, level float64, draws int) float64 {
-	if p >= surest {
-		return surest
+	low := surest
+	if p < surest {
+		step := shareStep(p, draws)
+		low = math.Round(100*step*math.Floor(p/step+1e-9)) / 100
 	}
-	step := shareStep(p, draws)
-	low := math.Round(100*step*math.Floor(p/step+1e-9)) / 100
 	if p >= level {
 		low = math.Max(low, level)
 	}
