@@ -11,6 +11,7 @@ import (
 	"parch/internal/job"
 	"parch/internal/routes"
 	"parch/internal/steps"
+	"parch/internal/thermo"
 )
 
 func buy(t *testing.T, j *job.Job, needs ...costs.Need) costs.Buying {
@@ -18,6 +19,7 @@ func buy(t *testing.T, j *job.Job, needs ...costs.Need) costs.Buying {
 	cat := exampleCatalog()
 	cat.Agents["sieve-3a"] = &catalog.Agent{Key: "sieve-3a", Name: "molecular sieve 3A", Kind: "sieve", BeadDiameter: &catalog.Value{Text: "2 mm"}}
 	cat.Agents["calcium-hydride"] = &catalog.Agent{Key: "calcium-hydride", Name: "calcium hydride", Kind: "reactive"}
+	cat.Solvents = map[string]*catalog.Solvent{"toluene": {Key: "toluene", Name: "toluene", Pure: thermo.Pure{DensityKgPerM3: flat(870)}}}
 	book, err := costs.NewBook(cat, j)
 	if err != nil {
 		t.Fatal(err)
@@ -129,6 +131,40 @@ func TestStorageLimits(t *testing.T) {
 	}
 	if tr := p.Transport; tr.UN != "1404" || tr.Class != "4.3" || !strings.Contains(tr.Basis, "from memory") {
 		t.Errorf("transport %+v", tr)
+	}
+}
+
+// A limit by volume counts litres: 10 L keep the drum of 20 L out.
+func TestStorageLimitByVolume(t *testing.T) {
+	j := dryToluene("20", "400", 0, 0)
+	j.Prices = append(j.Prices, own("toluene-dry", "litre", "2.5", "80", "2026-10-01", job.Terms{}))
+	need := costs.Need{Item: "toluene-dry", Unit: "litre", Process: 20, AtOnce: 5, LaterYears: 20}
+	if got := packsOf(buy(t, j, need).Purchases[0]); got != "1 x 20" {
+		t.Errorf("without a limit: %s", got)
+	}
+	j.Storage = []job.StorageLimit{{Item: "toluene-dry", M3: 0.010}}
+	p := buy(t, j, need).Purchases[0]
+	if packsOf(p) != "8 x 2.5" || !strings.Contains(p.Why, "over the site's limit of 10 L are left out") {
+		t.Errorf("limit of 10 L: %s, %q", packsOf(p), p.Why)
+	}
+}
+
+// 30 kg as 25 + 5 kg cost 475; the least in one size is two of 25 kg for 500 (six of
+// 5 kg: 1350, four of 20 kg at least: 600).
+func TestWhatMixedPacksSave(t *testing.T) {
+	p := buy(t, sievePacks(), sieveNeed(30)).Purchases[0]
+	if !strings.Contains(p.Why, ": 25.00 less than packs of one size") {
+		t.Errorf("%q", p.Why)
+	}
+}
+
+// What a dry grade may hold is told from the job's own price, else from the catalog.
+func TestGradeOnTheList(t *testing.T) {
+	j := dryToluene("20", "400", 0, 0)
+	need := costs.Need{Item: "toluene-dry", Unit: "litre", Process: 20, AtOnce: 5, LaterYears: 20}
+	j.Prices[0].WaterMax = 30e-6
+	if p := buy(t, j, need).Purchases[0]; !strings.Contains(p.Specification, "dry grade, water at most 30 mg/kg") {
+		t.Errorf("%q", p.Specification)
 	}
 }
 
