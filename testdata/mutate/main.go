@@ -249,8 +249,9 @@ func drawsCases(folder string) bool {
 // and column.
 type stretch struct{ line, column, toLine, toColumn int }
 
-// passed are the stretches by the file's base name.
-type passed map[string][]stretch
+// passed are the stretches by the file's base name: those that tests came past, and
+// those that none did.
+type passed map[string]struct{ by, never []stretch }
 
 // coverage runs the tests of a folder as they are; they have to pass.
 func (r runs) coverage(folder string) (passed, error) {
@@ -272,25 +273,28 @@ func (r runs) coverage(folder string) (passed, error) {
 		name, rest, _ := strings.Cut(line, ":")
 		var s stretch
 		var statements, count int
-		if n, _ := fmt.Sscanf(rest, "%d.%d,%d.%d %d %d", &s.line, &s.column, &s.toLine, &s.toColumn, &statements, &count); n == 6 && count > 0 {
-			p[filepath.Base(name)] = append(p[filepath.Base(name)], s)
+		if n, _ := fmt.Sscanf(rest, "%d.%d,%d.%d %d %d", &s.line, &s.column, &s.toLine, &s.toColumn, &statements, &count); n == 6 {
+			all := p[filepath.Base(name)]
+			if count > 0 {
+				all.by = append(all.by, s)
+			} else {
+				all.never = append(all.never, s)
+			}
+			p[filepath.Base(name)] = all
 		}
 	}
 	return p, nil
 }
 
-// holds tells whether tests come past a change. What stands outside functions
-// counts as passed.
+// holds tells whether tests may come past a change. What stands outside functions,
+// or in none of the stretches, such as the condition of a case, counts as passed.
 func (p passed) holds(c change) bool {
-	if !c.inFunction {
-		return true
-	}
-	for _, s := range p[filepath.Base(c.file)] {
-		after := c.line > s.line || c.line == s.line && c.column >= s.column
-		before := c.line < s.toLine || c.line == s.toLine && c.column < s.toColumn
-		if after && before {
-			return true
-		}
-	}
-	return false
+	all := p[filepath.Base(c.file)]
+	return !c.inFunction || slices.ContainsFunc(all.by, c.within) || !slices.ContainsFunc(all.never, c.within)
+}
+
+func (c change) within(s stretch) bool {
+	after := c.line > s.line || c.line == s.line && c.column >= s.column
+	before := c.line < s.toLine || c.line == s.toLine && c.column < s.toColumn
+	return after && before
 }
