@@ -135,9 +135,12 @@ func (p plan) common(l *doubt.Lot, shown int) map[string]any {
 	for i := range shown {
 		all = append(all, p.handed(l, i*allDraws/shown))
 	}
-	o := &p.run.Outcomes[len(p.run.Outcomes)-1]
+	o, lots := &p.run.Outcomes[len(p.run.Outcomes)-1], 1
+	if over := p.run.Settings.LotsOverCharge; len(over) > 0 && over[0] > 0 {
+		lots = over[0]
+	}
 	return map[string]any{
-		"pair": pair(p.k.Mixture), "sites": sites(p.k.Catalog.Agents["sieve-3a"]), "temp_k": p.k.Job.Site.RoomK, "volume_m3": p.lot.BatchM3,
+		"lots": lots, "pair": pair(p.k.Mixture), "sites": sites(p.k.Catalog.Agents["sieve-3a"]), "temp_k": p.k.Job.Site.RoomK, "volume_m3": p.lot.BatchM3,
 		"dose_kg": o.AgentKg, "held_kg": o.Losses[0].SolventKg, "rate_per_h": o.Figure("rate constant K"),
 		"hours": p.run.Settings.SoakHours[0], "uses": p.uses(), "planned": planned, "draws": all,
 	}

@@ -150,10 +150,14 @@ def soak(q, loading_factor=1.0):
         pa = min(1.0, x * np.exp(ln_gamma(p, x, t)[0])) * psat
         return loading_factor * sum(qs * b * pa / (1 + b * pa) for qs, b in sites)
 
+    residual = q["residual"] + (q.get("lots", 1) - 1) * q["solvent_kg"] / q["dose_kg"] * w0 / (1 - w0)  # earlier lots left theirs
+
     def balance(ln_w):
         w = np.exp(ln_w)
-        return q["solvent_kg"] * (w / (1 - w) - w0 / (1 - w0)) + q["dose_kg"] * (loading(w) - q["residual"])
+        return q["solvent_kg"] * (w / (1 - w) - w0 / (1 - w0)) + q["dose_kg"] * (loading(w) - residual)
 
+    if balance(np.log(w0)) < 0:  # the sorbent is wetter than the lot
+        return {"equilibrium": w0, "outlet": w0}
     eq = np.exp(brentq(balance, np.log(1e-12), np.log(w0), xtol=1e-12))
     return {"equilibrium": eq, "outlet": eq + (w0 - eq) * np.exp(-q["rate_per_h"] * q["hours"])}
 
