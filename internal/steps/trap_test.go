@@ -3,6 +3,7 @@ package steps_test
 import (
 	"errors"
 	"math"
+	"strings"
 	"testing"
 
 	"pgregory.net/rapid"
@@ -237,5 +238,41 @@ func BenchmarkTrap(b *testing.B) {
 		if _, err := steps.RunTrap(eq, feed, 20e-6, rig("light"), rules); err != nil {
 			b.Fatal(err)
 		}
+	}
+}
+
+// A trap that is given less time than its goal takes boils for that time exactly, and
+// comes to where a trap with that goal takes as long. The heat is that of the heater.
+func TestTrapForATime(t *testing.T) {
+	eq, r := equilibrium(t, "toluene", 15), rig("light")
+	feed, quick := litres(eq.Mixture, 18, 480e-6), rules
+	quick.ShortestRefluxS = 0
+	whole, err := steps.RunTrap(eq, feed, 30e-6, r, quick)
+	if err != nil {
+		t.Fatal(err)
+	}
+	for _, share := range []float64{0.6, 0.9} {
+		hours := share * whole.Figure("reflux, each charge")
+		timed := quick
+		timed.LongestRefluxS = hours * 3600
+		o, err := steps.RunTrap(eq, feed, 30e-6, r, timed)
+		if err != nil {
+			t.Fatal(err)
+		}
+		near(t, "reflux", o.Figure("reflux, each charge"), hours, 1e-8)
+		near(t, "energy", o.EnergyKWh, r.HeaterW*(hours+o.Figure("heat-up, each charge"))/1e3, 1e-8)
+		if o.Why != steps.AtTime || !(o.Out.Water() > 30e-6 && o.Out.Water() < 480e-6) {
+			t.Errorf("%s at %g", o.Why, o.Out.Water())
+		}
+		back, err := steps.RunTrap(eq, feed, o.Out.Water(), r, quick)
+		if err != nil {
+			t.Fatal(err)
+		}
+		near(t, "time to that goal", back.Figure("reflux, each charge"), hours, 1e-4)
+	}
+	short := quick
+	short.LongestRefluxS = 1
+	if _, err := steps.RunTrap(eq, feed, 30e-6, r, short); !errors.Is(err, steps.ErrNoTrap) || !strings.Contains(err.Error(), "the receiver is not full") {
+		t.Errorf("one second: %v", err)
 	}
 }
