@@ -15,7 +15,9 @@ import (
 // Against a cheapest route with 2.415 a litre, 20 h, 0.25 kg and 3 kWh that is
 // 0.4 x 2 + 0.3 x 0.5 + 0.2 x 2 + 0.1 x 1 = 1.45.
 func TestWeightsByHand(t *testing.T) {
-	price := func(unit, text string) costs.Price { return costs.Price{Unit: unit, PerUnit: decimal.RequireFromString(text)} }
+	price := func(unit, text string) costs.Price {
+		return costs.Price{Unit: unit, PerUnit: decimal.RequireFromString(text)}
+	}
 	book := costs.Book{"technician": price("hour", "48"), "electricity": price("kwh", "0.20")}
 	run := routes.Run{HoursTotal: 10, WasteKg: 0.5, EnergyKWh: 3, LitresDelivered: 20, Uses: []routes.StageUse{
 		{Use: steps.Use{Head: steps.Labour, Item: "technician", Unit: "hour", Quantity: 2}},

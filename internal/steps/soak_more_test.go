@@ -9,6 +9,7 @@ import (
 
 	"pgregory.net/rapid"
 
+	"parch/internal/quantity"
 	"parch/internal/steps"
 )
 
@@ -200,6 +201,28 @@ func TestIsostericHeat(t *testing.T) {
 	}
 }
 
+// What is still to be taken up is (w0 - eq) exp(-K t); where that is more than the
+// equilibrium the result turns on the rate, later on what the sieve held.
+func TestWhatASoakTurnsOn(t *testing.T) {
+	m := mixture(t, "tetrahydrofuran")
+	run := func(hours float64) (o steps.Outcome, eq, away float64) {
+		o, err := steps.SoakOver(m, litres(m, 1, 300e-6), 50, hours*3600, sieve3A(t, 0.02), bottle(t, "tetrahydrofuran", 0.1))
+		if err != nil {
+			t.Fatal(err)
+		}
+		eq = o.Figure("equilibrium at this dose") * 1e-6
+		return o, eq, (300e-6 - eq) * math.Exp(-o.Figure("rate constant K")*hours)
+	}
+	early, eq, away := run(48)
+	if want := "leaves " + quantity.FormatWater(away) + " still to be taken up"; !strings.HasPrefix(early.RuledBy, "rate: ") || !strings.Contains(early.RuledBy, want) {
+		t.Errorf("%q, want %q", early.RuledBy, want)
+	}
+	near(t, "outlet", early.Out.Water(), eq+away, 1e-9)
+	if late, _, _ := run(400); !strings.HasPrefix(late.RuledBy, "residual loading: 2 g/100 g at the start leave ") {
+		t.Errorf("%q", late.RuledBy)
+	}
+}
+
 // Ketones condense: about 10 mg/kg per hour at 10 % of 3A (memory). The lot grows
 // wetter again, the balance counts the water made, and the driest hour is named.
 func TestKetonesMakeWater(t *testing.T) {
@@ -213,6 +236,7 @@ func TestKetonesMakeWater(t *testing.T) {
 		}
 		b := o.Balance
 		near(t, "water balance", b.WaterInKg+b.WaterMadeKg, b.WaterOutKg+b.WaterRemovedKg, 1e-12)
+		near(t, "water made", b.WaterMadeKg, 10e-6*hours*o.In.SolventKg, 0.005)
 		return o
 	}
 	aDay := run(24)
