@@ -15,7 +15,7 @@ import (
 // missed: what the best route does when that constraint alone is lifted.
 func nearMisses(ctx context.Context, k *routes.Case, t *search.Tuner) (said []string, err error) {
 	for _, lift := range []func(*job.Job, *job.Lot, *routes.Case) (string, search.Objective){
-		liftTime, liftWeek, liftExclusions, liftBand, liftTarget,
+		liftTime, liftAttendance, liftWeek, liftExclusions, liftBand, liftTarget,
 	} {
 		if err := ctx.Err(); err != nil {
 			return nil, err
@@ -52,6 +52,19 @@ func liftTime(_ *job.Job, lot *job.Lot, _ *routes.Case) (string, search.Objectiv
 	}
 	what := fmt.Sprintf("needed within %.3g h", lot.NeededWithinS/3600)
 	lot.NeededWithinS = 0
+	return what, search.Time
+}
+
+// wholeDay of attendance, s.
+const wholeDay = 24 * 3600
+
+// liftAttendance lets somebody be there around the clock, where a time is set.
+func liftAttendance(j *job.Job, lot *job.Lot, _ *routes.Case) (string, search.Objective) {
+	if lot.NeededWithinS == 0 || j.Site.AttendedSecondsPerDay >= wholeDay {
+		return "", ""
+	}
+	what := fmt.Sprintf("%.3g attended hours per day", j.Site.AttendedSecondsPerDay/3600)
+	j.Site.AttendedSecondsPerDay = wholeDay
 	return what, search.Time
 }
 
