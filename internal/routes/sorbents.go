@@ -84,11 +84,15 @@ func (c *Case) soakRig(stirred bool) steps.SoakRig {
 		AttendedS: c.practice("soak-attended"), WaterMolarM3: c.practice("water-molar-volume"),
 		Stirred: stirred, RelativeVelocityMS: c.practice("stir-velocity"),
 	}
-	if c.Solvent.Class == "ketone" {
+	if c.MakesWater() {
 		rig.CondensationPerS = c.practice("sieve-ketone-water") / 3600
 	}
 	return rig
 }
+
+// MakesWater reports whether the solvent condenses on a sorbent, so that a longer stand
+// may leave it wetter.
+func (c *Case) MakesWater() bool { return c.Solvent.Class == "ketone" }
 
 // sorbent is a sieve of the catalog with the lot's history. A sieve that is
 // used again is sized for its last use.

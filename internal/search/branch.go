@@ -295,6 +295,19 @@ func (b *Bounds) bed(k *routes.Case, s routes.Stage) (tolls []toll, out steps.Lo
 			}
 			least, found = x, true
 		}
+		dry := func(v stand, charges int) {
+			run, err := b.bedded(k, s, after, v, charges, 1, k.Goal())
+			if err != nil {
+				last = err
+				return
+			}
+			count(&run)
+			if o := run.Outcomes[0]; o.Out.Water() < driest {
+				driest = o.Out.Water()
+				out, ends = b.handedOver(o.Out, driest)
+				out.SolventKg, out.WaterKg = out.SolventKg*leastKept, out.WaterKg*leastKept
+			}
+		}
 		for _, v := range b.stands(s.Kind) {
 			for _, n := range lots {
 				if run, err := b.bedded(k, s, after, v, 1, n, k.Feed.Water()*leastEffort); err == nil {
@@ -302,17 +315,15 @@ func (b *Bounds) bed(k *routes.Case, s routes.Stage) (tolls []toll, out steps.Lo
 				}
 			}
 			for _, charges := range chargesTried {
-				run, err := b.bedded(k, s, after, v, charges, 1, k.Goal())
-				if err != nil {
-					last = err
-					continue
-				}
-				count(&run)
-				if o := run.Outcomes[0]; o.Out.Water() < driest {
-					driest = o.Out.Water()
-					out, ends = b.handedOver(o.Out, driest)
-					out.SolventKg, out.WaterKg = out.SolventKg*leastKept, out.WaterKg*leastKept
-				}
+				dry(v, charges)
+			}
+		}
+		if s.Kind == steps.Soak && k.MakesWater() { // the longest stand is not the driest
+			for i := 0; i < len(stirredHours) && !ends; i++ {
+				dry(stand{stirredHours[i], true}, 1)
+			}
+			for i := 0; i < len(soakHours) && !ends; i++ {
+				dry(stand{soakHours[i], false}, 1)
 			}
 		}
 		if found {

@@ -81,3 +81,24 @@ func anyBelow(bounds []Measures, m Measures) bool {
 	}
 	return false
 }
+
+// Acetone condenses on a sieve, so that its longest stand is not its driest: salt and
+// a short stirred stand reach what four weeks do not, and the bound knows.
+func TestBoundOfASolventThatMakesWater(t *testing.T) {
+	tuner := tunerOf(t, lotYAML("cost", "acetone", 10, 24, 100000, 100, ""))
+	bounds := tuner.NewBounds(tuner.Case.Steps())
+	branch := bounds.Root()
+	for _, s := range []routes.Stage{{Kind: steps.Salt, Agent: "magnesium-sulfate"}, {Kind: steps.Soak, Agent: "sieve-3a"}} {
+		var err error
+		if branch, err = bounds.Extend(branch, s); err != nil {
+			t.Fatal(err)
+		}
+	}
+	run, err := tuner.Tune(branch.Route)
+	if err != nil || !run.Meets {
+		t.Fatalf("%v: %g mg/kg", err, run.WaterOut*1e6)
+	}
+	if !branch.Ends {
+		t.Errorf("%s leaves %.3g mg/kg, yet its bound says that it cannot reach the limit", branch.Route.ID(), run.WaterOut*1e6)
+	}
+}
