@@ -34,6 +34,9 @@ func (r *refluxing) outcome(feed Lot) Outcome {
 		Condenser:     condense(r.rig.HeaterW, r.rig.HeatShare, r.rules.CoolingFlowM3S, r.rules.CoolingRiseK),
 		Course:        r.course, Warnings: r.warnings, Returns: string(r.returns),
 	}
+	for i := r.trappedAt; i < len(o.Course); i++ { // stripping begins when the reflux is over, however soon the trap was done
+		o.Course[i].Hours += (refluxS - trapS) / secondsPerHour
+	}
 	if r.why == AtFloor && r.half != stripOnly {
 		o.Floor = r.dryness(&r.trapped)
 	}
@@ -61,6 +64,9 @@ func (r *refluxing) share(o *Outcome, n, vapourShare float64) {
 	regained := 0.0
 	if lowest := r.rules.LowestOutlet / (1 - r.rules.LowestOutlet) * (o.Out.SolventKg + o.Out.CarrierKg); o.Out.WaterKg < math.Min(lowest, o.In.WaterKg) {
 		regained = math.Min(lowest, o.In.WaterKg) - o.Out.WaterKg
+		if r.why != AtPractice {
+			o.Warnings = append(o.Warnings, fmt.Sprintf("droplets and moist air keep an outlet at %s or more, whatever is computed", quantity.FormatWater(r.rules.LowestOutlet)))
+		}
 		o.Out.WaterKg += regained
 	}
 	if r.half != stripOnly {

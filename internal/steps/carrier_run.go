@@ -53,7 +53,7 @@ func runCarrier(half half, eq *CarrierEquilibrium, feed Lot, plan CarrierPlan, r
 	if err := r.reflux(); err != nil {
 		return Outcome{}, err
 	}
-	r.trapped = r.s
+	r.trapped, r.trappedAt = r.s, len(r.course)
 	if half == bothHalves {
 		if err := r.strip(); err != nil {
 			return Outcome{}, err
@@ -81,7 +81,7 @@ func StripCarrier(eq *CarrierEquilibrium, feed Lot, plan CarrierPlan, rig TrapRi
 		return Outcome{}, err
 	}
 	r.note(&first)
-	r.trapped = r.s
+	r.trapped, r.trappedAt = r.s, len(r.course)
 	if err := r.strip(); err != nil {
 		return Outcome{}, err
 	}
@@ -102,6 +102,7 @@ type refluxing struct {
 	heatUpJ       float64
 	s             state
 	trapped       state                          // when the trap stopped
+	trappedAt     int                            // points of the course until then
 	near          [MostStages + 1]thermo.Boiling // pot and stages, where they boiled last
 	split         thermo.TernarySplit
 	why, stripWhy Stop

@@ -444,3 +444,19 @@ func BenchmarkCarrier(b *testing.B) {
 		})
 	}
 }
+
+// The course ends when the hours of heating up, reflux and stripping are over, also
+// where the trap is done before the shortest reflux.
+func TestCarrierCourseKeepsTheClock(t *testing.T) {
+	eq := carrierEquilibrium(t, "n-n-dimethylformamide", "toluene", 20)
+	feed := carrierLot(eq, 1, 0.02)
+	o, err := steps.RunCarrier(eq, feed, withColumn(feed, 0.3, 5), rig("either"), rules)
+	if err != nil {
+		t.Fatal(err)
+	}
+	want := o.Figure("heat-up, each charge") + o.Figure("reflux, each charge") + o.Figure("stripping, each charge")
+	near(t, "hours at the end of the course", o.Course[len(o.Course)-1].Hours, want, 1e-9)
+	if reflux := o.Figure("reflux, each charge"); reflux != rules.ShortestRefluxS/3600 {
+		t.Errorf("%g h of reflux: the case is one of the shortest reflux no more", reflux)
+	}
+}

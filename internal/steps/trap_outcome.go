@@ -68,6 +68,10 @@ func (b *boiling) outcome(feed Lot, goal float64, why Stop) Outcome {
 		{holdsOfWater, "mL", b.rig.UsableVolumeM3 * 1e6},
 		{"floor of the pot", "mg/kg", b.eq.Floor.Water * mgPerKg},
 	}
+	if dry := floorMargin * b.eq.Floor.Water; feed.Water() <= dry {
+		o.WhyText = fmt.Sprintf("floor: the lot holds %s, and this trap takes no water out of less than %s", quantity.FormatWater(feed.Water()), quantity.FormatWater(dry))
+		o.Warnings = append(o.Warnings, "nothing is gained: the lot is as dry as this trap can make it")
+	}
 	o.Warnings = append(o.Warnings, oftenDrained(drainings, "let free water settle first, or take a larger receiver")...)
 	return o
 }

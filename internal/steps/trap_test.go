@@ -175,6 +175,20 @@ func TestTrapNeverClaimsLessThanPractice(t *testing.T) {
 	}
 }
 
+// A lot under the floor comes out as it went in, and the trap says that nothing is gained.
+func TestTrapOnALotUnderItsFloor(t *testing.T) {
+	eq := equilibrium(t, "ethyl-acetate", 25)
+	feed := litres(eq.Mixture, 1, 0.9*eq.Floor.Water)
+	o, err := steps.RunTrap(eq, feed, 100e-6, rig("light"), rules)
+	if err != nil {
+		t.Fatal(err)
+	}
+	near(t, "water", o.Out.Water(), feed.Water(), 1e-9)
+	if len(o.Warnings) == 0 || !strings.Contains(o.Warnings[0], "nothing is gained") || !strings.Contains(o.WhyText, "takes no water out") {
+		t.Errorf("%s; %v", o.WhyText, o.Warnings)
+	}
+}
+
 func TestTrapRefusals(t *testing.T) {
 	for _, solvent := range []string{"tetrahydrofuran", "acetonitrile"} {
 		if _, err := steps.NewTrapEquilibrium(mixture(t, solvent), 298.15, atmospherePa); !errors.Is(err, steps.ErrNoTrap) {
