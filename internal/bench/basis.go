@@ -108,6 +108,9 @@ func (a *Answer) restsOnSorbent() {
 		a.habit("bed volumes that go back", "column-recycle")
 	case q.Stirred:
 		a.habit("velocity past the beads", "stir-velocity")
+		if q.Powder {
+			a.habit("rate of a stirred powder, which is taken to be no slower than such beads", "stirred-slurry-rate")
+		}
 	default:
 		a.restsOn("mixing rate of a still vessel", &q.Solvent.StillRate)
 	}

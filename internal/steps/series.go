@@ -159,11 +159,9 @@ func SizeSeries(m *thermo.Mixture, feed Lot, goal float64, n int, sorbent Sorben
 func (b *bath) sizeOf(o Outcome, goal, timeS float64, n int, capacityGrams float64) SoakSize {
 	s := SoakSize{
 		Hours: timeS / secondsPerHour, Reached: o.Out.Water(), Advice: o.WhyText,
-		CapacityGrams: capacityGrams, SpeedGrams: math.NaN(), DoseGrams: math.NaN(),
+		CapacityGrams: capacityGrams, DoseGrams: math.NaN(),
 	}
-	if k := math.Log(b.feed.Water()/goal) / float64(n) / timeS; k < b.mixPerS {
-		s.SpeedGrams = float64(n) * b.volumeM3 * 1e3 / (b.beadPerS * (1/k - 1/b.mixPerS))
-	}
+	s.SpeedGrams = float64(n) * b.volumeM3 * 1e3 * b.doseOfRate(math.Log(b.feed.Water()/goal)/float64(n)/timeS)
 	s.Capacity, s.Speed, s.Dose = s.CapacityGrams/b.volumeM3/1e3, s.SpeedGrams/b.volumeM3/1e3, o.Figure("dose")
 	if s.Enough = o.Why == AtTarget; s.Enough {
 		s.AtLeast = s.Dose <= float64(n)*b.sorbent.MinDoseKgPerM3*(1+1e-9)

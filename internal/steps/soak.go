@@ -38,6 +38,8 @@ type bath struct {
 	volumeM3 float64
 	mixPerS  float64 // k_mix
 	beadPerS float64 // film and bead in series, per (kg/m3) of dose
+	// Of the usual beads in place of a stirred powder, likewise; 0: no such powder.
+	asBeadsPerS float64
 }
 
 func newBath(m *thermo.Mixture, feed Lot, sorbent Sorbent, rig SoakRig) (*bath, error) {
@@ -55,13 +57,24 @@ func newBath(m *thermo.Mixture, feed Lot, sorbent Sorbent, rig SoakRig) (*bath, 
 	if !rig.Stirred && sorbent.DispersionPerS > 0 {
 		sorbent.BeadDiameterM = layerM // a powder that settles is reached through the top of its layer only
 	}
-	areaPerKg := 6 / sorbent.BeadDiameterM / sorbent.BeadKgPerM3
-	b.beadPerS = areaPerKg * inSeries(s.film(sherwood, sorbent.BeadDiameterM), insideBead(s, sorbent))
+	b.beadPerS = perDose(s, sherwood, sorbent)
+	if rig.Stirred && sorbent.DispersionPerS > 0 {
+		beads := sorbent
+		beads.BeadDiameterM = math.Max(layerM, sorbent.BeadDiameterM)
+		b.asBeadsPerS = perDose(s, stirredSherwood(s.reynolds(rig.RelativeVelocityMS, beads.BeadDiameterM), s.schmidt()), beads)
+	}
 	return b, nil
 }
 
-// layerM is the grain that a settled powder is taken for: a layer of it is no
-// better reached than a layer of the usual beads (assumption).
+// perDose is the rate of film and bead in series, 1/s for a dose of 1 kg/m3.
+func perDose(s stream, sherwood float64, beads Sorbent) float64 {
+	areaPerKg := 6 / beads.BeadDiameterM / beads.BeadKgPerM3
+	return areaPerKg * inSeries(s.film(sherwood, beads.BeadDiameterM), insideBead(s, beads))
+}
+
+// layerM is the grain of the usual beads. A settled powder is taken for such: a
+// layer of it is no better reached than a layer of them. A stirred powder is taken
+// to be no slower than they are, stirred the same way (assumptions).
 const layerM = 2e-3
 
 // mixing is k_mix: slower in a taller still vessel, without bound in a stirred
@@ -125,8 +138,22 @@ func (b *bath) equilibriumFrom(doseKg, residualKgPerKg float64) (float64, error)
 // rate is K in w(t) = w_eq + (w_0 - w_eq) exp(-K t):
 //
 //	1/K = 1/k_mix + 1/(k_f a) + 1/(k_int a)
+//
+// and of a stirred powder at least that of the usual beads.
 func (b *bath) rate(doseKgPerM3 float64) float64 {
-	return 1 / (1/b.mixPerS + 1/(b.beadPerS*doseKgPerM3))
+	return math.Max(1/(1/b.mixPerS+1/(b.beadPerS*doseKgPerM3)), b.asBeadsPerS*doseKgPerM3)
+}
+
+// doseOfRate is the dose (kg/m3) whose rate is k, NaN where none is as fast.
+func (b *bath) doseOfRate(kPerS float64) float64 {
+	dose := math.NaN()
+	if kPerS < b.mixPerS {
+		dose = 1 / (b.beadPerS * (1/kPerS - 1/b.mixPerS))
+	}
+	if asBeads := kPerS / b.asBeadsPerS; b.asBeadsPerS > 0 && !(asBeads >= dose) {
+		dose = asBeads
+	}
+	return dose
 }
 
 // made is the water that condensation adds in timeS, kg/kg. It is counted on

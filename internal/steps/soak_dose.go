@@ -104,9 +104,7 @@ func (b *bath) dose(goal, timeS float64) (SoakDose, error) {
 	if spare := b.loading(goal) - b.sorbent.ResidualKgPerKg; spare > 0 {
 		d.Capacity = (b.feed.SolventKg*(feed/(1-feed)-goal/(1-goal)) + b.beforeKg()) / spare / b.volumeM3
 	}
-	if k := math.Log(feed/goal) / timeS; k < b.mixPerS {
-		d.Speed = 1 / (b.beadPerS * (1/k - 1/b.mixPerS))
-	}
+	d.Speed = b.doseOfRate(math.Log(feed/goal) / timeS)
 	if b.rig.CondensationPerS > 0 {
 		return b.doseWithCondensation(d, goal, timeS)
 	}

@@ -68,6 +68,8 @@ func (b *bath) withLotsBefore() string {
 // slowest names the larger resistance.
 func (b *bath) slowest(doseKgPerM3 float64) string {
 	switch {
+	case b.asBeadsPerS*doseKgPerM3 >= b.rate(doseKgPerM3): // 0 where it is no stirred powder
+		return "that of beads stirred the same way, below which a powder is not taken"
 	case b.mixPerS > b.beadPerS*doseKgPerM3:
 		return "set by diffusion into the beads"
 	case b.rig.Stirred:
