@@ -22,6 +22,7 @@ type Activation struct {
 	Low, High float64 // NaN where no band is known
 	Note      string  // how it came about where the catalog does not have it
 	Origin    catalog.Origin
+	Borrowed  bool // found on zeolites, and the agent is none
 }
 
 func noActivation() Activation { return Activation{Low: math.NaN(), High: math.NaN()} }
@@ -51,15 +52,33 @@ func (r *reader) activated() {
 	if !ok {
 		text = usualHistory
 	}
+	if stated, ok, err := job.StatedResidual(text); ok {
+		r.statedResidual(stated, err)
+		return
+	}
+	r.history(text)
+	if r.q.Agent.Kind != "sieve" {
+		r.q.Activation.borrow()
+	}
+}
+
+// What a sorbent that is no zeolite may hold, by what a zeolite with its history does:
+// nearly nothing to well above it (assumption).
+const borrowedLow, borrowedHigh = 0.1, 3
+
+func (a *Activation) borrow() {
+	a.Borrowed = true
+	a.Text += ", as for a zeolite"
+	a.Low, a.High = borrowedLow*a.KgPerKg, borrowedHigh*a.KgPerKg
+	a.Origin = catalog.Origin{Source: "assumption", Confidence: catalog.Assumption, Note: "the figure is for zeolites"}
+}
+
+func (r *reader) history(text string) {
 	for _, h := range r.cat.Histories {
 		if strings.EqualFold(h.Key, strings.Join(strings.Fields(text), "-")) {
 			r.q.Activation = r.ofHistory(h)
 			return
 		}
-	}
-	if stated, ok, err := job.StatedResidual(text); ok {
-		r.statedResidual(stated, err)
-		return
 	}
 	ovenK, rest, err := leadingTemperature(text)
 	if err != nil {

@@ -287,6 +287,31 @@ func TestActivation(t *testing.T) {
 	}
 }
 
+// What silica gel and alumina hold after activation is not in the data: a history is
+// that of zeolites, which is said, with a band from a tenth to three times of it
+// (assumption). What is stated is taken as it is, and a sieve is not warned of.
+func TestOtherSorbentsBorrowTheirHistory(t *testing.T) {
+	for _, f := range []struct {
+		agent, history string
+		borrowed       bool
+	}{
+		{"silica-gel", "300 C", true}, {"silica-gel", "225 C", true}, {"silica-gel", "200 C, vacuum 1 hPa", true}, {"alumina", "oven-200", true},
+		{"silica-gel", "residual 2 g/100 g, 300 C", false}, {"alumina", "residual 1 g/100 g", false}, {"sieve-3a", "300 C", false}, {"sieve-4a", "225 C", false},
+	} {
+		a := answer(t, "soak", "toluene", map[string]string{"water": "100 mg/kg", "agent": f.agent, "dose": "50 g/L", "hours": "24", "activated": f.history})
+		warned := slices.ContainsFunc(a.Warnings, func(w string) bool { return strings.Contains(w, "holds after activation is not known") })
+		assumed := slices.ContainsFunc(a.Basis, func(b bench.Basis) bool {
+			return strings.HasPrefix(b.What, "loading after: ") && strings.HasSuffix(b.What, "as for a zeolite") && b.Confidence == catalog.Assumption
+		})
+		if warned != f.borrowed || assumed != f.borrowed {
+			t.Errorf("%s, %s: warned %t, assumed %t", f.agent, f.history, warned, assumed)
+		}
+		if h := a.Question.Activation; f.borrowed && !(h.Low <= h.KgPerKg/10*(1+1e-9) && h.High >= 3*h.KgPerKg*(1-1e-9) && a.High > 2*a.Low) {
+			t.Errorf("%s, %s: %g to %g about %g, outlet %g to %g", f.agent, f.history, h.Low, h.High, h.KgPerKg, a.Low, a.High)
+		}
+	}
+}
+
 // Standing never dries a sieve, and what is known less well has a band that is no
 // narrower: the catalog's factor (an assumption) where a history has none of its own.
 func TestHistoriesAreBandedAndOnlyGetWetter(t *testing.T) {
