@@ -1,5 +1,7 @@
 package catalog
 
+import "strings"
+
 // Agent is a drying agent named by its material.
 type Agent struct {
 	Key, Name, Kind string // Kind: "sieve", "salt", "reactive", "oxide"
@@ -45,6 +47,12 @@ type Claim struct {
 	Least   Value            // kg/kg, lowest outlet
 	Dose    Value            // kg/m3, to which Removed belongs
 	Target  Value            // kg/kg; for a lower one a salt is not the last step
+}
+
+// Plain is the agent's name without its form.
+func (a *Agent) Plain() string {
+	name, _, _ := strings.Cut(a.Name, ", ")
+	return name
 }
 
 // Reaction is what one agent does with water.

@@ -48,7 +48,12 @@ func (a *Answer) advise() {
 // elsewhere for it: activating the beads, handing over what is spent.
 func (a *Answer) adviseHours() {
 	text := fmt.Sprintf("%s h in all, %s h of them attended", quantity.Significant(a.HoursTotal, 3), quantity.Significant(a.OwnHours, 3))
-	if more := a.HoursAttended - a.OwnHours; more > 1e-9 {
+	switch more := a.HoursAttended - a.OwnHours; {
+	case more <= 1e-9:
+	case a.Kind == steps.Reactive: // the hours in all have it
+		text = fmt.Sprintf("%s h in all, %s h of them attended: %s h at the still, %s h for %s", quantity.Significant(a.HoursTotal, 3), quantity.Significant(a.HoursAttended, 3),
+			quantity.Significant(a.OwnHours, 3), quantity.Significant(more, 3), a.elsewhere("technician"))
+	default:
 		text += fmt.Sprintf("; %s h of work more: %s", quantity.Significant(more, 3), a.elsewhere("technician"))
 	}
 	a.tell("time", "%s", text)
@@ -187,15 +192,16 @@ func times(n float64) string {
 
 func (a *Answer) adviseReactive() {
 	need, charged := a.Figure("agent needed"), a.Figure("agent charged")
-	a.tell("agent", "%s g take up the water, %s g are charged: %s g are surplus and become waste unspent",
+	a.tell("agent", "%s g would take up all of the water, %s g are charged: %s g are surplus and become waste unspent",
 		quantity.Significant(need, 3), quantity.Significant(charged, 3), quantity.Significant(charged-need, 3))
 	now, later := a.Figure("hydrogen while drying"), a.Figure("hydrogen held by the surplus, set free at disposal")
 	if now > 0 || later > 0 {
-		a.tell("hydrogen", "%s L (at 20 °C) come off while drying, %s L are held by the surplus and come off at its disposal: vented, never sealed",
+		a.tell("hydrogen", "up to %s L (at 20 °C) come off while drying, %s L are held by the surplus and come off at its disposal: vented, never sealed",
 			quantity.Significant(now, 3), quantity.Significant(later, 3))
 	}
-	class := strings.ReplaceAll(strings.TrimPrefix(a.Question.Agent.Reaction.Waste, "waste-"), "-", " ")
-	a.tell("spent", "goes as %s waste, by people trained for it", class)
+	for _, d := range a.Discards {
+		a.tell("spent", "goes as %s waste, by people trained for it", d.Class)
+	}
 	if left, ok := a.Case.Beside(); ok {
 		a.tell("instead", "without a reactive agent, %s over 100 g/L of sieve 3A, still, %s h, 300 °C furnace, would leave about %s",
 			a.Question.Solvent.Name, quantity.Significant(routes.BesideHours, 3), quantity.FormatWater(left))

@@ -158,7 +158,7 @@ func (a *Answer) wetter() error {
 func explained(k *routes.Case, q *Question, err error) error {
 	switch {
 	case errors.Is(err, steps.ErrWetSieve) && q.Activation.Borrowed:
-		return &Refusal{Reason: err.Error(), Hint: fmt.Sprintf(`what %s holds after activation is not known and is taken from zeolites; where it is known, state it with --activated "residual ..."`, plain(q.Agent))}
+		return &Refusal{Reason: err.Error(), Hint: fmt.Sprintf(`what %s holds after activation is not known and is taken from zeolites; where it is known, state it with --activated "residual ..."`, q.Agent.Plain())}
 	case errors.Is(err, routes.ErrWasteful):
 		return &Refusal{Reason: err.Error(), Hint: lessWasteful(k, q)}
 	case errors.Is(err, steps.ErrNoSense), errors.Is(err, routes.ErrAsked), errors.Is(err, steps.ErrNoColumn):

@@ -164,6 +164,9 @@ func plausible(t *testing.T, a *bench.Answer) {
 	if !(a.HoursTotal > 0 && a.OwnHours > 0 && a.OwnHours <= a.HoursTotal*(1+1e-9) && a.HoursAttended >= a.OwnHours*(1-1e-9) && a.EnergyKWh >= 0) {
 		t.Errorf("%s: %g h, %g h attended, %g kWh", name, a.HoursTotal, a.HoursAttended, a.EnergyKWh)
 	}
+	if a.Kind == steps.Reactive && a.HoursAttended > a.HoursTotal*(1+1e-9) {
+		t.Errorf("%s: %g h attended of %g h in all", name, a.HoursAttended, a.HoursTotal)
+	}
 	if len(a.Cautions) == 0 || len(a.Sources) == 0 || len(a.Advice) == 0 || len(a.Basis) == 0 {
 		t.Errorf("%s: %d cautions, %d sources, %d lines of advice, %d of basis", name, len(a.Cautions), len(a.Sources), len(a.Advice), len(a.Basis))
 	}
@@ -354,6 +357,58 @@ func TestUnitsOfABench(t *testing.T) {
 	q, err := bench.Read(c, bench.Request{Kind: "trap", Solvent: c.Solvents["toluene"], Flags: map[string]string{"water": "1 mol %", "reagent": "0.5 mol", "temperature": "68 F"}})
 	if err != nil || math.Abs(q.Water*1e6/104-1) > 0.01 || math.Abs(q.TempK-293.15) > 1e-9 { // 5 mmol in 0.867 kg
 		t.Errorf("%+v, %v", q, err)
+	}
+}
+
+// Where nothing was measured the answer says so, with the whole band of the class
+// (calcium hydride: an activity of 0.01, a factor of ten either way), and hydrogen is
+// the most there can be. What was measured is not warned of.
+func TestReactiveWithoutAMeasurement(t *testing.T) {
+	warned := func(a *bench.Answer) string {
+		i := slices.IndexFunc(a.Warnings, func(w string) bool { return strings.HasPrefix(w, "nothing was measured for ") })
+		if i < 0 {
+			return ""
+		}
+		return a.Warnings[i]
+	}
+	a := answer(t, "reactive", "tetrahydrofuran", map[string]string{"water": "200 mg/kg", "agent": "calcium-hydride", "peroxide": "0 mg/L"})
+	w := warned(a)
+	if !strings.Contains(w, "calcium hydride in tetrahydrofuran: it may leave anything between 23.5 mg/kg and 2520 mg/kg") || !strings.Contains(a.WhyText, "no drying is claimed") {
+		t.Errorf("%q, %q", w, a.WhyText)
+	}
+	if text := told(a, "hydrogen"); !strings.HasPrefix(text, "up to ") {
+		t.Errorf("hydrogen: %s", text)
+	}
+	if w := warned(answer(t, "reactive", "dichloromethane", map[string]string{"water": "100 mg/kg", "agent": "calcium-hydride"})); w != "" {
+		t.Errorf("measured, but %q", w)
+	}
+}
+
+func told(a *bench.Answer, topic string) string {
+	for _, line := range a.Advice {
+		if line.Topic == topic {
+			return line.Text
+		}
+	}
+	return ""
+}
+
+// The waste of a spent agent is of one class wherever it is named, that of the
+// catalog: lime goes as wet solid, a hydride as reactive waste. Lime gives no
+// hydrogen, and no rows of it.
+func TestOneClassOfWaste(t *testing.T) {
+	for _, f := range []struct {
+		solvent, agent, class string
+		hydrogen              bool
+	}{{"ethanol", "calcium-oxide", "wet solid", false}, {"toluene", "calcium-hydride", "reactive", true}} {
+		a := answer(t, "reactive", f.solvent, map[string]string{"water": "400 mg/kg", "agent": f.agent})
+		if !strings.HasPrefix(told(a, "spent"), "goes as "+f.class+" waste") || !strings.Contains(told(a, "waste"), " of "+f.class+" waste: ") ||
+			!slices.ContainsFunc(a.Warnings, func(w string) bool { return strings.HasPrefix(w, "the spent agent is "+f.class+" waste: ") }) {
+			t.Errorf("%s: %q, %q, %q", f.agent, told(a, "spent"), told(a, "waste"), a.Warnings)
+		}
+		if rows := slices.ContainsFunc(a.Figures, func(x steps.Figure) bool { return strings.HasPrefix(x.Name, "hydrogen") }); rows != f.hydrogen || (told(a, "hydrogen") != "") != f.hydrogen {
+			t.Errorf("%s: rows of hydrogen %t, %q", f.agent, rows, told(a, "hydrogen"))
+		}
 	}
 }
 

@@ -4,7 +4,6 @@ import (
 	"fmt"
 	"strings"
 
-	"parch/catalog"
 	"parch/internal/quantity"
 )
 
@@ -36,12 +35,6 @@ func (a *Answer) floorOfHistory() string {
 		return "an empty sieve sets no floor, and none is met in practice"
 	}
 	return fmt.Sprintf("no dose and no time pass the floor of %s that this sets", quantity.FormatWater(a.Floor))
-}
-
-// plain is an agent's name without its form.
-func plain(agent *catalog.Agent) string {
-	name, _, _ := strings.Cut(agent.Name, ", ")
-	return name
 }
 
 // Sorbent names the agent and its form.

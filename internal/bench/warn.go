@@ -73,7 +73,7 @@ func (a *Answer) warnIsotherm() {
 	i := a.Question.Agent.Isotherm
 	if history := a.Question.Activation; history.Borrowed {
 		a.warning(`what %s holds after activation is not known: %.2g g/100 g is taken from zeolites, and the band, %.2g to %.2g g/100 g, is an assumption; where it is known, state it with --activated "residual ..."`,
-			plain(a.Question.Agent), 100*history.KgPerKg, 100*history.Low, 100*history.High)
+			a.Question.Agent.Plain(), 100*history.KgPerKg, 100*history.Low, 100*history.High)
 	}
 	if t := a.Question.TempK; i.TMaxK > 0 && (t < i.TMinK-farK || t > i.TMaxK+farK) {
 		a.warning("%s lies outside the %.0f to %.0f °C of the isotherm: extrapolated", quantity.FormatTemperature(t), i.TMinK-zeroCelsius, i.TMaxK-zeroCelsius)

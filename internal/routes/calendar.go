@@ -91,12 +91,17 @@ func (c *Case) refuseHazard(s Stage) string {
 	switch {
 	case boils && excluded(job.Boiling):
 		return "the job excludes boiling solvents"
-	case s.Kind == steps.Reactive && excluded(job.ReactiveWaste):
+	case s.Kind == steps.Reactive && excluded(job.ReactiveWaste) && c.leavesReactiveWaste(s.Agent):
 		return "the job excludes reactive waste"
 	case s.Kind == steps.Reactive && excluded(job.Hydrogen) && c.makesHydrogen(s.Agent):
 		return "the job excludes hydrogen"
 	}
 	return ""
+}
+
+func (c *Case) leavesReactiveWaste(agent string) bool {
+	a := c.Catalog.Agents[agent]
+	return a == nil || a.Reaction == nil || wasteClass(a.Reaction.Waste) == steps.ReactiveWaste
 }
 
 func (c *Case) makesHydrogen(agent string) bool {

@@ -21,7 +21,7 @@ func (c *Case) runSalt(lot steps.Lot, goal float64, agent string, last bool) (st
 
 func (c *Case) salt(a *catalog.Agent) steps.SaltAgent {
 	s := steps.SaltAgent{
-		Key: a.Key, MolarMassKgPerMol: a.MolarMassKgPerMol(), ShareRemoved: a.Claim.Removed.SI,
+		Key: a.Key, Name: a.Plain(), MolarMassKgPerMol: a.MolarMassKgPerMol(), ShareRemoved: a.Claim.Removed.SI,
 		HoldUpM3PerKg: a.HoldUp.SI, MaxDoseKgPerM3: a.MaxDose.SI,
 	}
 	if other, ok := a.Claim.Except[c.Solvent.Key]; ok {

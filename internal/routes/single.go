@@ -81,6 +81,9 @@ func (c *Case) Single(a Asked) (Single, error) {
 	uses := c.account(1, s.Outcome, choice{stirred: a.Stirred, after: Discard})
 	s.OwnHours = s.HoursAttended
 	s.Elsewhere = append(beside(uses, "technician", s.HoursAttended), beside(uses, "electricity", s.EnergyKWh)...)
+	if a.Kind == steps.Reactive {
+		s.HoursTotal += c.practice("reactive-spent") / 3600 // as of a route
+	}
 	s.HoursAttended, s.EnergyKWh = sum(uses, "technician"), sum(uses, "electricity")
 	return s, nil
 }

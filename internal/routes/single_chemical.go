@@ -102,7 +102,7 @@ func (c *Case) singleReactive(a Asked, s *Single) (err error) {
 	}
 	volumeM3 := steps.LotVolume(c.Mixture, c.Feed, c.Job.Site.RoomK)
 	if need := s.Figure("agent needed") / 1e3 / volumeM3; given(a.DoseKgPerM3) && a.DoseKgPerM3 < need*(1-1e-9) {
-		return fmt.Errorf("%w: %.3g g/L of %s are under the %.3g g/L that the water takes", steps.ErrNoSense, a.DoseKgPerM3, a.Agent, need)
+		return fmt.Errorf("%w: %.3g g/L of %s are under the %.3g g/L that the water takes", steps.ErrNoSense, a.DoseKgPerM3, agent.Name, need)
 	}
 	s.tellGoal(a.Goal, rig.RefluxS, agent.LeastRefluxS)
 	s.Low, s.High = s.Figure("residual, low")*1e-6, s.Figure("residual, high")*1e-6
@@ -129,11 +129,20 @@ func (s *Single) tellGoal(goal, refluxS, leastS float64) {
 	}
 }
 
+// wasteClass is that of a spent agent by the price item which the catalog gives it.
+// What is neither wet solid nor reactive there goes as reactive, the more careful.
+func wasteClass(item string) steps.WasteClass {
+	if item == "waste-wet-solid" {
+		return steps.WetSolidWaste
+	}
+	return steps.ReactiveWaste
+}
+
 func (c *Case) reactiveAgent(key string) steps.ReactiveAgent {
 	a := c.Catalog.Agents[key]
 	re := a.Reaction
 	return steps.ReactiveAgent{
-		Key: key, MolarMassKgPerMol: a.MolarMassKgPerMol(), WaterMolPerMol: re.Water, HydrogenMolPerMol: re.Hydrogen, SolventMolPerMol: re.Solvent,
+		Key: key, Name: a.Plain(), Waste: wasteClass(re.Waste), MolarMassKgPerMol: a.MolarMassKgPerMol(), WaterMolPerMol: re.Water, HydrogenMolPerMol: re.Hydrogen, SolventMolPerMol: re.Solvent,
 		ClassActivity: re.Activity.SI, ClassBand: re.Activity.High / re.Activity.SI, HandlesBelow: re.Feed.SI, LowestOutlet: c.practice("trap-outlet-minimum"), LeastRefluxS: c.practice("reactive-reflux"),
 	}
 }

@@ -103,7 +103,7 @@ func (c *Case) sorbent(agent, after string) steps.Sorbent {
 		share = math.Pow(1-a.Fade.SI, a.Lives.SI-1)
 	}
 	s := steps.Sorbent{
-		Key: agent, Loading: a.Isotherm.LoadingKgPerKg, DataFromPa: a.Isotherm.LowestPa,
+		Key: agent, Name: a.Plain(), Loading: a.Isotherm.LoadingKgPerKg, DataFromPa: a.Isotherm.LowestPa,
 		ResidualKgPerKg: c.Lot.ResidualLoading, CapacityShare: share * c.loadingFactor(agent), Unfit: c.unfit(a),
 		BeadDiameterM: a.BeadDiameter.SI, BeadKgPerM3: a.BeadDensity.SI, Porosity: a.BeadPorosity.SI, Tortuosity: a.BeadTortuosity.SI,
 		HoldUpM3PerKg: a.HoldUp.SI, MinDoseKgPerM3: c.practice("dose-minimum"), MaxDoseKgPerM3: a.MaxDose.SI,

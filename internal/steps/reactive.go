@@ -1,6 +1,7 @@
 package steps
 
 import (
+	"cmp"
 	"errors"
 	"fmt"
 	"math"
@@ -11,7 +12,8 @@ import (
 
 // ReactiveAgent is an agent that takes water up by reaction and is distilled off.
 type ReactiveAgent struct {
-	Key               string
+	Key, Name         string     // Name: "" is Key
+	Waste             WasteClass // of the spent agent; "": reactive
 	MolarMassKgPerMol float64
 	WaterMolPerMol    float64 // taken by a mole at its working stage
 	HydrogenMolPerMol float64 // given off by a mole that has reacted in full
@@ -22,6 +24,12 @@ type ReactiveAgent struct {
 	LowestOutlet      float64 // kg/kg, least that is claimed of an unmeasured pair: moist air reaches the distillate; 0: none
 	LeastRefluxS      float64 // below it the wet end of the band is claimed; 0: not stated
 }
+
+// called is the agent's name for the reader.
+func (a ReactiveAgent) called() string { return cmp.Or(a.Name, a.Key) }
+
+// wasteClass of the spent agent, surplus and heel.
+func (a ReactiveAgent) wasteClass() WasteClass { return cmp.Or(a.Waste, ReactiveWaste) }
 
 // Measured is a residual that was found for the pair in print.
 type Measured struct {
@@ -90,6 +98,7 @@ type residual struct {
 	water, low, high float64
 	why              Stop
 	text             string
+	unmeasured       string // what to warn of where only the class is known
 }
 
 // residual takes what was measured for the pair, else the activity that agents of
@@ -99,7 +108,7 @@ func (a ReactiveAgent) residual(m *thermo.Mixture, feed Lot, found Measured, rig
 	r := residual{why: AtMeasured}
 	if found.Water > 0 {
 		r.water, r.low, r.high = found.Water, found.Water/orOne(found.Band), found.Water*orOne(found.Band)
-		r.text = fmt.Sprintf("measured: %s left %s in %s (%s)", a.Key, quantity.FormatWater(found.Water), m.Solvent.Called(), found.Source)
+		r.text = fmt.Sprintf("measured: %s left %s in %s (%s)", a.called(), quantity.FormatWater(found.Water), m.Solvent.Called(), found.Source)
 	} else {
 		r.why = AtFloor
 		at := func(activity float64) float64 {
@@ -111,10 +120,12 @@ func (a ReactiveAgent) residual(m *thermo.Mixture, feed Lot, found Measured, rig
 		}
 		r.water, r.low, r.high = at(a.ClassActivity), at(a.ClassActivity/a.ClassBand), at(a.ClassActivity*a.ClassBand)
 		if math.IsNaN(r.low + r.water + r.high) {
-			return r, fmt.Errorf("%s in %s: no solution of that activity was found", a.Key, m.Solvent.Called())
+			return r, fmt.Errorf("%s in %s: no solution of that activity was found", a.called(), m.Solvent.Called())
 		}
 		r.text = fmt.Sprintf("class floor: no measurement for %s in %s; agents of its kind leave a water activity near %.2g, here %s, %s to %s",
-			a.Key, m.Solvent.Key, a.ClassActivity, quantity.FormatWater(r.water), quantity.FormatWater(r.low), quantity.FormatWater(r.high))
+			a.called(), m.Solvent.Called(), a.ClassActivity, quantity.FormatWater(r.water), quantity.FormatWater(r.low), quantity.FormatWater(r.high))
+		r.unmeasured = fmt.Sprintf("nothing was measured for %s in %s: it may leave anything between %s and %s, which is the band of its class; the figure shown is no measurement",
+			a.called(), m.Solvent.Called(), quantity.FormatWater(r.low), quantity.FormatWater(r.high))
 	}
 	if found.Water == 0 && r.water < a.LowestOutlet {
 		r.why = AtPractice
@@ -126,8 +137,11 @@ func (a ReactiveAgent) residual(m *thermo.Mixture, feed Lot, found Measured, rig
 		r.text += fmt.Sprintf("; refluxed for less than %.3g h, so %s is taken", a.LeastRefluxS/secondsPerHour, quantity.FormatWater(r.high))
 	}
 	if fed := feed.Water(); r.water >= fed {
-		r.text += "; the lot is no wetter than that and is not dried"
-		r.water = fed
+		if r.water = fed; found.Water > 0 {
+			r.text += "; the lot is no wetter than that and is not dried"
+		} else {
+			r.text += "; the lot is no wetter than that, so no drying is claimed"
+		}
 	}
 	r.low, r.high = math.Min(r.low, feed.Water()), math.Min(r.high, feed.Water())
 	return r, nil
@@ -135,7 +149,7 @@ func (a ReactiveAgent) residual(m *thermo.Mixture, feed Lot, found Measured, rig
 
 func (a ReactiveAgent) check(feed Lot, solvent string, rig ReactiveRig) error {
 	if w := feed.Water(); w > a.HandlesBelow {
-		return fmt.Errorf("%w: %s with %s; pre-dry it below %s before %s meets it", ErrPreDry, solvent, quantity.FormatWater(w), quantity.FormatWater(a.HandlesBelow), a.Key)
+		return fmt.Errorf("%w: %s with %s; pre-dry it below %s before %s meets it", ErrPreDry, solvent, quantity.FormatWater(w), quantity.FormatWater(a.HandlesBelow), a.called())
 	}
 	return errors.Join(
 		checkAmount("a surplus", "times the need", rig.Surplus, 1, 1000),

@@ -9,7 +9,7 @@ import (
 )
 
 // RunReactive boils a lot over a reactive agent and distils it off. The agent is
-// charged over its need; the heel stays with it and goes as reactive waste.
+// charged over its need; the heel stays with it and goes as waste of its class.
 func RunReactive(m *thermo.Mixture, feed Lot, agent ReactiveAgent, found Measured, rig ReactiveRig) (Outcome, error) {
 	return withCarrier(feed, func(lot Lot) (Outcome, error) { return runReactive(m, lot, agent, found, rig) })
 }
@@ -28,17 +28,17 @@ func runReactive(m *thermo.Mixture, feed Lot, agent ReactiveAgent, found Measure
 	}
 	c := agent.charge(m, feed.WaterKg, LotVolume(m, feed, rig.RoomK), rig)
 	if c.boundSolventKg > 0.5*feed.SolventKg {
-		return Outcome{}, fmt.Errorf("%w: %.3g kg of %s would bind more than half the lot", ErrNoSense, c.chargedKg, agent.Key)
+		return Outcome{}, fmt.Errorf("%w: %.3g kg of %s would bind more than half the lot", ErrNoSense, c.chargedKg, agent.called())
 	}
 	d := distilling{m: m, rig: rig, feed: feed, boilK: boilK, bound: c.boundSolventKg}
 	d.heat()
-	o := d.outcome(left.water, c)
+	o := d.outcome(left.water, c, agent.wasteClass())
 	o.Agent = agent.Key
 	o.Floor = left.water
 	o.Why, o.WhyText = left.why, left.text
 	o.RuledBy = left.text
 	o.Figures = d.figures(agent, c, left)
-	o.Warnings = reactiveWarnings(agent, c)
+	o.Warnings = reactiveWarnings(agent, c, left)
 	return o, nil
 }
 
@@ -77,7 +77,7 @@ func (d *distilling) heat() {
 	d.vapourKg = math.Min(d.vapourKg, d.feed.SolventKg-d.bound-d.heelKg)
 }
 
-func (d *distilling) outcome(water float64, c charge) Outcome {
+func (d *distilling) outcome(water float64, c charge, class WasteClass) Outcome {
 	charges := float64(d.rig.Charges)
 	keptKg := d.feed.SolventKg - d.bound - d.heelKg - d.vapourKg
 	keptWaterKg := keptKg * water / (1 - water)
@@ -94,7 +94,7 @@ func (d *distilling) outcome(water float64, c charge) Outcome {
 			{"heel left with the agent", d.heelKg},
 			{"vapour past the condenser", d.vapourKg},
 		},
-		Discards: []Discard{{ReactiveWaste, "spent and surplus agent under its heel", d.heelKg + d.bound + c.chargedKg + reactedKg}},
+		Discards: []Discard{{class, "spent and surplus agent under its heel", d.heelKg + d.bound + c.chargedKg + reactedKg}},
 	}
 	if d.bound > 0 {
 		o.Losses = append(o.Losses, Loss{"bound by surplus agent", d.bound})
@@ -114,12 +114,10 @@ func (d *distilling) outcome(water float64, c charge) Outcome {
 
 func (d *distilling) figures(agent ReactiveAgent, c charge, left residual) []Figure {
 	charges := float64(d.rig.Charges)
-	return []Figure{
+	figures := []Figure{
 		{"agent needed", "g", c.needKg * 1e3},
 		{"agent charged", "g", c.chargedKg * 1e3},
 		{"surplus", "g", c.surplusKg * 1e3},
-		{"hydrogen while drying", "L", c.hydrogenNowM3 * litrePerM3},
-		{"hydrogen held by the surplus, set free at disposal", "L", c.hydrogenLater * litrePerM3},
 		{"charges", "", charges},
 		{"heat-up, each charge", "h", d.heatUpS / charges / secondsPerHour},
 		{"reflux, each charge", "h", d.rig.RefluxS / secondsPerHour},
@@ -127,17 +125,26 @@ func (d *distilling) figures(agent ReactiveAgent, c charge, left residual) []Fig
 		{"heel", "%", 100 * d.heelShare()},
 		{"residual, low", "mg/kg", left.low * mgPerKg},
 		{"residual, high", "mg/kg", left.high * mgPerKg},
-		{"hydrogen of a gram of agent", "L", agent.HydrogenM3PerKg(hydrogenK)},
 	}
+	if agent.HydrogenMolPerMol == 0 {
+		return figures
+	}
+	return append(figures,
+		Figure{"hydrogen while drying", "L", c.hydrogenNowM3 * litrePerM3},
+		Figure{"hydrogen held by the surplus, set free at disposal", "L", c.hydrogenLater * litrePerM3},
+		Figure{"hydrogen of a gram of agent", "L", agent.HydrogenM3PerKg(hydrogenK)})
 }
 
-func reactiveWarnings(agent ReactiveAgent, c charge) []string {
-	w := []string{"the spent agent is reactive waste: hand it to the site's trained waste service under its own rules"}
+func reactiveWarnings(agent ReactiveAgent, c charge, left residual) []string {
+	w := []string{fmt.Sprintf("the spent agent is %s waste: hand it to the site's trained waste service under its own rules", agent.wasteClass())}
 	if c.hydrogenNowM3 > 0 {
-		w = append([]string{fmt.Sprintf("%s of hydrogen come off while drying: the vessel is vented to a safe place, never sealed; no ignition source", quantity.FormatVolume(c.hydrogenNowM3))}, w...)
+		w = append([]string{fmt.Sprintf("up to %s of hydrogen come off while drying: the vessel is vented to a safe place, never sealed; no ignition source", quantity.FormatVolume(c.hydrogenNowM3))}, w...)
 	}
 	if c.surplusKg > c.needKg {
-		w = append(w, fmt.Sprintf("%.0f %% of the %s charged is surplus and becomes waste unspent", 100*c.surplusKg/c.chargedKg, agent.Key))
+		w = append(w, fmt.Sprintf("%.0f %% of the %s charged is surplus and becomes waste unspent", 100*c.surplusKg/c.chargedKg, agent.called()))
+	}
+	if left.unmeasured != "" {
+		w = append(w, left.unmeasured)
 	}
 	return w
 }

@@ -1,6 +1,7 @@
 package steps
 
 import (
+	"cmp"
 	"errors"
 	"fmt"
 	"math"
@@ -11,7 +12,7 @@ import (
 
 // SaltAgent is a salt that dries by taking up water of crystallization.
 type SaltAgent struct {
-	Key               string
+	Key, Name         string  // Name: "" is Key
 	MolarMassKgPerMol float64 // anhydrous
 	Pairs             []HydratePair
 	ShareRemoved      float64 // of the dissolved water, in ClaimTimeS at ClaimDoseKgPerM3; 0: none from this solvent
@@ -19,6 +20,9 @@ type SaltAgent struct {
 	HoldUpM3PerKg     float64 // solvent kept on a filtered cake, per kg of cake
 	MaxDoseKgPerM3    float64
 }
+
+// called is the salt's name for the reader.
+func (s SaltAgent) called() string { return cmp.Or(s.Name, s.Key) }
 
 // SaltRules are the limits of what may be claimed for a salt, whatever its
 // equilibrium says.
@@ -62,7 +66,7 @@ func newSaltBath(m *thermo.Mixture, feed Lot, salt SaltAgent, rules SaltRules, r
 		return nil, err
 	}
 	if salt.UselessAboveK > 0 && rig.TempK >= salt.UselessAboveK {
-		return nil, fmt.Errorf("%w: %s loses its water again above %.1f °C; the lot is at %.1f °C", ErrSaltTooWarm, salt.Key, salt.UselessAboveK-273.15, rig.TempK-273.15)
+		return nil, fmt.Errorf("%w: %s loses its water again above %.1f °C; the lot is at %.1f °C", ErrSaltTooWarm, salt.called(), salt.UselessAboveK-273.15, rig.TempK-273.15)
 	}
 	saturated, ok, err := m.Solubility(rig.TempK)
 	if err != nil {
@@ -186,7 +190,7 @@ func (b *saltBath) reason(goal, water float64, dose float64, h hydration) (Stop,
 	case !math.IsNaN(goal) && water <= goal*(1+1e-9):
 		return AtTarget, fmt.Sprintf("hand-over at %s reached", quantity.FormatWater(goal))
 	case water == b.feed.Water() && b.salt.ShareRemoved == 0:
-		return AtPractice, fmt.Sprintf("practical limit: no removal of dissolved water by %s is claimed here; it takes suspended water only", b.salt.Key)
+		return AtPractice, fmt.Sprintf("practical limit: no removal of dissolved water by %s is claimed here; it takes suspended water only", b.salt.called())
 	case h.takenKg == 0 && dose > 0:
 		return AtFloor, fmt.Sprintf("floor: the lot is drier than what %s leaves", b.salt.Pairs[0].Name)
 	case water == b.feed.Water():

@@ -60,7 +60,7 @@ func (b *saltBath) scaled(doseKgPerM3 float64) []string {
 		return nil
 	}
 	return []string{fmt.Sprintf("the share that %s removes is published for %s in %.3g min; that less salt or less time removes less of it, as a first order in both, is an assumption",
-		b.salt.Key, quantity.FormatConcentration(r.ClaimDoseKgPerM3), r.ClaimTimeS/60)}
+		b.salt.called(), quantity.FormatConcentration(r.ClaimDoseKgPerM3), r.ClaimTimeS/60)}
 }
 
 func (b *saltBath) figures(doseKgPerM3, takenKg, heldM3, recoveredM3 float64, h hydration) []Figure {

@@ -1,6 +1,7 @@
 package steps
 
 import (
+	"cmp"
 	"errors"
 	"fmt"
 	"math"
@@ -11,7 +12,7 @@ import (
 
 // Sorbent is a bed of beads, or a powder, and what it still holds.
 type Sorbent struct {
-	Key             string
+	Key, Name       string                                      // Name: "" is Key
 	Loading         func(partialPressurePa, tK float64) float64 // kg water per kg, at equilibrium
 	DataFromPa      float64                                     // below this water pressure Loading extrapolates; 0: not stated
 	ResidualKgPerKg float64                                     // from the sieve's history
@@ -31,6 +32,9 @@ type Sorbent struct {
 	MinDoseKgPerM3        float64 // charged even where less would do; 0: none
 	MaxDoseKgPerM3        float64
 }
+
+// called is the sorbent's name for the reader.
+func (s Sorbent) called() string { return cmp.Or(s.Name, s.Key) }
 
 // Errors that say why a sorbent is not put to work.
 var (
@@ -84,14 +88,14 @@ func (s *sorption) balanced(lnHighest float64, surplus func(w float64) float64) 
 }
 
 func (s *sorption) wetter() error {
-	return fmt.Errorf("%w: %s holding %.3g g/100 g against %s", ErrWetSieve, s.sorbent.Key, 100*s.sorbent.ResidualKgPerKg, quantity.FormatWater(s.feed.Water()))
+	return fmt.Errorf("%w: %s holding %.3g g/100 g against %s", ErrWetSieve, s.sorbent.called(), 100*s.sorbent.ResidualKgPerKg, quantity.FormatWater(s.feed.Water()))
 }
 
 // check refuses a pair that has no equilibrium to rest on and a temperature at
 // which the solvent is not a liquid in an open vessel.
 func (s *sorption) check() error {
 	if s.sorbent.Unfit != "" {
-		return fmt.Errorf("%w: %s in %s: %s", ErrUnfit, s.sorbent.Key, s.m.Solvent.Called(), s.sorbent.Unfit)
+		return fmt.Errorf("%w: %s in %s: %s", ErrUnfit, s.sorbent.called(), s.m.Solvent.Called(), s.sorbent.Unfit)
 	}
 	return checkLiquid(s.m.Solvent, s.tempK)
 }
