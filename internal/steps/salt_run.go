@@ -44,13 +44,45 @@ func (b *saltBath) run(doseKgPerM3, goal float64) Outcome {
 		o.Course = append(o.Course, Point{Hours: t / secondsPerHour, Water: b.claim(h, doseKgPerM3, t)})
 	}
 	o.Why, o.WhyText = b.reason(goal, water, doseKgPerM3, h)
-	o.RuledBy = "claim: a salt is held to its published removal, not to its equilibrium"
+	o.RuledBy = b.ruledBy(water, h)
+	if takenKg == 0 && doseKg > 0 {
+		o.Warnings = append(o.Warnings, b.takesNothing(heldKg/density))
+	}
 	o.Warnings = append(o.Warnings, b.scaled(doseKgPerM3)...)
 	o.Figures = b.figures(doseKgPerM3, takenKg, heldKg/density, rinse.throughKgDried/density, h)
 	if rinse.addedKg > 0 {
 		o.Warnings = append(o.Warnings, fmt.Sprintf("the rinse takes %.3g L of dried solvent off the cake and leaves as much fresh solvent on it: the volume lost stays the same", rinse.throughKgDried/density*litrePerM3))
 	}
 	return o
+}
+
+// ruledBy names what the outlet turns on: the larger of equilibrium, published removal
+// and lowest claim.
+func (b *saltBath) ruledBy(water float64, h hydration) string {
+	switch {
+	case b.tooDry():
+		return fmt.Sprintf("equilibrium: from a lot drier than %s the salt takes nothing up", quantity.FormatWater(b.leaves[0]))
+	case water == h.water && h.spent && h.pair == len(b.salt.Pairs)-1:
+		return "capacity: the salt is all in its highest hydrate"
+	case water == h.water:
+		return fmt.Sprintf("equilibrium: the activity of water over the salt, which leaves %s; the published removal alone would leave less", quantity.FormatWater(water))
+	case water == b.rules.LowestOutlet:
+		return "claim: no salt is held to less than the lowest outlet claimed, whatever its equilibrium"
+	}
+	return "claim: a salt is held to its published removal, not to its equilibrium"
+}
+
+// tooDry is a lot from which not even the first hydrate forms.
+func (b *saltBath) tooDry() bool { return len(b.leaves) > 0 && b.feed.Water() <= b.leaves[0] }
+
+// takesNothing is said of a lot that leaves the salt as wet as it came.
+func (b *saltBath) takesNothing(heldM3 float64) string {
+	feed, held := quantity.FormatWater(b.feed.Water()), quantity.FormatVolume(heldM3)
+	if b.tooDry() {
+		return fmt.Sprintf("%s takes nothing up: the lot, at %s, is drier than this salt can make it (%s), and %s of solvent stay on its cake for nothing",
+			b.salt.called(), feed, quantity.FormatWater(b.leaves[0]), held)
+	}
+	return fmt.Sprintf("%s is not claimed to take anything up from this lot, at %s; %s of solvent stay on its cake for nothing", b.salt.called(), feed, held)
 }
 
 // scaled says that a claim was scaled down from the dose and the time of its figure.

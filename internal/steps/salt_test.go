@@ -127,6 +127,33 @@ func TestClaimsAreLimited(t *testing.T) {
 	}
 }
 
+// What the outlet turns on is what holds it up: in toluene the equilibrium of sodium
+// sulfate (activity 0.8) lies above what 20 % of 400 mg/kg leave; calcium chloride
+// is held to its published 85 %; magnesium sulfate from 100 mg/kg to the lowest claim.
+// A lot drier than the salt can make it is told so.
+func TestWhatASaltTurnsOn(t *testing.T) {
+	m := mixture(t, "toluene")
+	for _, f := range []struct {
+		agent, begins string
+		water         float64
+		nothing       bool
+	}{
+		{"sodium-sulfate", "equilibrium: ", 400e-6, false}, {"calcium-chloride", "claim: a salt is held to its published removal", 400e-6, false},
+		{"magnesium-sulfate", "claim: no salt", 100e-6, false}, {"sodium-sulfate", "", 200e-6, true}, {"magnesium-sulfate", "", 40e-6, true},
+	} {
+		o, err := steps.RunSalt(m, litres(m, 5, f.water), 100, salt(f.agent), claims, flask())
+		if err != nil {
+			t.Fatal(err)
+		}
+		if !strings.HasPrefix(o.RuledBy, f.begins) {
+			t.Errorf("%s at %g: turns on %q", f.agent, f.water, o.RuledBy)
+		}
+		if told := hasWord(o.Warnings, "for nothing"); told != f.nothing || told != (o.Figure("water taken up") == 0) {
+			t.Errorf("%s at %g: %g g taken up, %q", f.agent, f.water, o.Figure("water taken up"), o.Warnings)
+		}
+	}
+}
+
 // Published: magnesium sulfate took 80 % and sodium sulfate 18 to 20 % of the
 // water in 15 min at 10 % m/v; sodium sulfate took none from acetonitrile.
 func TestPublishedRemovals(t *testing.T) {
