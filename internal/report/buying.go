@@ -45,12 +45,20 @@ func investment(y *costs.Year, currency string) string {
 	}
 	text := fmt.Sprintf(" Against %s, which buys none, the equipment never pays back", v.Against)
 	if !math.IsNaN(v.PaybackYears) {
-		text = fmt.Sprintf(" Against %s, which buys none, the equipment saves %s %s a year and is paid back in %s years", v.Against, money(v.YearlySaving), currency, quantity.Significant(v.PaybackYears, 2))
+		text = fmt.Sprintf(" Against %s, which buys none, the equipment saves %s %s a year and is paid back in %s", v.Against, money(v.YearlySaving), currency, years(v.PaybackYears, 2))
 	}
 	if v.Interest > 0 {
-		text += fmt.Sprintf("; its net present value is %s at %s over %s years", money(v.PresentValue), quantity.FormatShare(v.Interest), quantity.Significant(v.Years, 3))
+		text += fmt.Sprintf("; its net present value is %s at %s over %s", money(v.PresentValue), quantity.FormatShare(v.Interest), years(v.Years, 3))
 	}
 	return text + "."
+}
+
+// years to so many digits, in words.
+func years(n float64, digits int) string {
+	if said := quantity.Significant(n, digits); said != "1" {
+		return said + " years"
+	}
+	return "1 year"
 }
 
 func wastes(kg map[string]float64) string {

@@ -31,3 +31,34 @@ func TestScoresOfWeighedObjectives(t *testing.T) {
 		t.Errorf("%d routes, the best with %g: the cheapest as it was scores 1", ranked, routes[0].Objective)
 	}
 }
+
+// Where the cheapest route takes none of what is weighed, the least that another takes is
+// the unit: energy of bought solvent is zero, so a trap scores by its own energy.
+func TestScoresWhereTheCheapestTakesNone(t *testing.T) {
+	const lot = "exclude: {steps: [soak, forerun, column, reactive, salt]}\n" +
+		"prices: [{item: toluene-dry, pack: 20 L, price: 1 EUR, date: 2026-10-01, water: 10 mg/kg}]\n" +
+		"lots:\n- {solvent: toluene, batch: 18 L, batches: 40 /yr, water: 480 mg/kg, target: 60 mg/kg}\n"
+	byCost := compare(t, lot, study.Options{}).Lots[0].Routes
+	if byCost[0].ID != "buy" || byCost[0].Run.EnergyKWh != 0 {
+		t.Fatalf("%s is cheapest, with %g kWh", byCost[0].ID, byCost[0].Run.EnergyKWh)
+	}
+	litre, least := byCost[0].Bill.PerLitre.InexactFloat64(), math.Inf(1)
+	for _, r := range byCost[1:] {
+		if r.Rank > 0 {
+			least = math.Min(least, r.Run.EnergyKWh)
+		}
+	}
+	others := 0
+	for _, r := range compare(t, "objective: {cost: 0.5, energy: 0.5}\n"+lot, study.Options{}).Lots[0].Routes {
+		want := 0.5*r.Bill.PerLitre.InexactFloat64()/litre + 0.5*r.Run.EnergyKWh/least
+		if r.Rank > 0 && math.Abs(r.Objective-want) > 1e-6*want {
+			t.Errorf("%s: score %.6g, want %.6g", r.ID, r.Objective, want)
+		}
+		if r.Rank > 0 && r.ID != "buy" {
+			others++
+		}
+	}
+	if others == 0 {
+		t.Error("nothing is compared with buying")
+	}
+}
