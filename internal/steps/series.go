@@ -54,6 +54,22 @@ func series(m *thermo.Mixture, feed Lot, charges []Charge, sorbent Sorbent, rig 
 	return total, nil
 }
 
+// waterAfter is what a series leaves, kg/kg, NaN where it does not get so far.
+func waterAfter(m *thermo.Mixture, feed Lot, charges []Charge, sorbent Sorbent, rig SoakRig) float64 {
+	left := feed
+	left.SolventKg, left.CarrierKg = feed.SolventKg+feed.CarrierKg, 0
+	for _, c := range charges {
+		b, err := newBath(m, left, sorbent, rig)
+		if err != nil {
+			return math.NaN()
+		}
+		if left, _, err = b.decanted(c.Kg/b.volumeM3, c.TimeS); err != nil || !(left.SolventKg > 0) {
+			return math.NaN()
+		}
+	}
+	return left.Water()
+}
+
 // SeriesFor stands a lot over n equal charges, each for timeS, of the least dose
 // that reaches goal (kg/kg) with the last of them; or over n of the largest
 // practical doses where none does. Each charge is at least the least usual dose.
@@ -66,8 +82,9 @@ func SeriesFor(m *thermo.Mixture, feed Lot, goal, timeS float64, n int, sorbent 
 		return Outcome{}, err
 	}
 	volumeM3 := LotVolume(m, feed, rig.TempK)
+	charges := func(doseKgPerM3 float64) []Charge { return EqualCharges(n, doseKgPerM3*volumeM3, timeS) }
 	over := func(doseKgPerM3 float64) (Outcome, error) {
-		return SoakSeries(m, feed, EqualCharges(n, doseKgPerM3*volumeM3, timeS), sorbent, rig)
+		return SoakSeries(m, feed, charges(doseKgPerM3), sorbent, rig)
 	}
 	dose := float64(n) * math.Max(sorbent.MinDoseKgPerM3, leastDose)
 	o, err := over(dose)
@@ -78,11 +95,7 @@ func SeriesFor(m *thermo.Mixture, feed Lot, goal, timeS float64, n int, sorbent 
 		return missedBySeries(o, goal, n), err
 	}
 	lnDose, err := thermo.Brent(func(lnDose float64) float64 {
-		o, err := over(math.Exp(lnDose))
-		if err != nil {
-			return math.NaN()
-		}
-		return math.Log(o.Out.Water() / goal)
+		return math.Log(waterAfter(m, feed, charges(math.Exp(lnDose)), sorbent, rig) / goal)
 	}, math.Log(dose), math.Log(most), 1e-10)
 	if err != nil {
 		return Outcome{}, err
@@ -101,8 +114,9 @@ func SeriesUntil(m *thermo.Mixture, feed Lot, goal, doseKgPerM3 float64, n int, 
 		return Outcome{}, err
 	}
 	kg := doseKgPerM3 * LotVolume(m, feed, rig.TempK)
+	charges := func(lnTimeS float64) []Charge { return EqualCharges(n, kg, math.Exp(lnTimeS)) }
 	over := func(lnTimeS float64) (Outcome, error) {
-		return SoakSeries(m, feed, EqualCharges(n, kg, math.Exp(lnTimeS)), sorbent, rig)
+		return SoakSeries(m, feed, charges(lnTimeS), sorbent, rig)
 	}
 	longest := math.Log(longestSoakS / float64(n))
 	o, err := over(longest)
@@ -110,11 +124,7 @@ func SeriesUntil(m *thermo.Mixture, feed Lot, goal, doseKgPerM3 float64, n int, 
 		return missedBySeries(o, goal, n), err
 	}
 	lnTimeS, err := thermo.Brent(func(lnTimeS float64) float64 {
-		o, err := over(lnTimeS)
-		if err != nil {
-			return math.NaN()
-		}
-		return math.Log(o.Out.Water() / goal)
+		return math.Log(waterAfter(m, feed, charges(lnTimeS), sorbent, rig) / goal)
 	}, 0, longest, 1e-10)
 	if err != nil {
 		return Outcome{}, err

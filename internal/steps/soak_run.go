@@ -39,23 +39,20 @@ func (b *bath) run(goal, timeS float64, dose SoakDose) (Outcome, error) {
 	if err != nil {
 		return Outcome{}, err
 	}
-	doseKg := dose.Dose * b.volumeM3
-	eq := b.feed.Water()
-	if dose.Dose > 0 {
-		if eq, err = b.equilibrium(doseKg); err != nil {
-			return Outcome{}, err
-		}
+	decanted, eq, err := b.decanted(dose.Dose, timeS)
+	if err != nil {
+		return Outcome{}, err
 	}
+	doseKg := dose.Dose * b.volumeM3
 	at := func(t float64) float64 { return b.course(eq, dose.Dose, t) }
 	out := at(timeS)
 
 	vessels := float64(b.rig.Vessels)
-	heldKg := math.Min(doseKg*b.sorbent.HoldUpM3PerKg*b.m.Solvent.DensityKgPerM3.At(b.tempK), b.feed.SolventKg) / b.lots()
-	keptKg := b.feed.SolventKg - heldKg
+	heldKg := b.feed.SolventKg - decanted.SolventKg
 	ratio := out / (1 - out)
 	o := Outcome{
 		Kind: Soak, Agent: b.sorbent.Key, In: b.feed,
-		Out:           Lot{SolventKg: keptKg, WaterKg: keptKg * ratio, TempK: b.tempK},
+		Out:           decanted,
 		Floor:         floor,
 		HoursTotal:    timeS/secondsPerHour + vessels*b.rig.AttendedS/secondsPerHour,
 		HoursAttended: vessels * b.rig.AttendedS / secondsPerHour,
@@ -81,6 +78,22 @@ func (b *bath) run(goal, timeS float64, dose SoakDose) (Outcome, error) {
 	}
 	o.Figures = b.figures(dose, eq, takenKg, doseKg)
 	return o, b.remark(&o, eq, timeS, dose.Dose, takenKg)
+}
+
+// decanted is what comes off the beads after timeS, and the water of the equilibrium
+// it was on its way to, kg/kg.
+func (b *bath) decanted(doseKgPerM3, timeS float64) (out Lot, eq float64, err error) {
+	doseKg := doseKgPerM3 * b.volumeM3
+	eq = b.feed.Water()
+	if doseKg > 0 {
+		if eq, err = b.equilibrium(doseKg); err != nil {
+			return Lot{}, eq, err
+		}
+	}
+	w := b.course(eq, doseKgPerM3, timeS)
+	heldKg := math.Min(doseKg*b.sorbent.HoldUpM3PerKg*b.m.Solvent.DensityKgPerM3.At(b.tempK), b.feed.SolventKg) / b.lots()
+	keptKg := b.feed.SolventKg - heldKg
+	return Lot{SolventKg: keptKg, WaterKg: keptKg * w / (1 - w), TempK: b.tempK}, eq, nil
 }
 
 func (b *bath) figures(dose SoakDose, eq, takenKg, doseKg float64) []Figure {
