@@ -14,7 +14,7 @@ const discardedLot = "the reclaimed lot that is not dried"
 
 // account turns what a step did into what is paid for.
 func (c *Case) account(place int, o steps.Outcome, choice choice) []StageUse {
-	var uses []StageUse
+	uses := make([]StageUse, 0, 16)
 	use := func(head steps.Head, item, unit string, quantity float64, basis string) {
 		if quantity > 0 {
 			uses = append(uses, StageUse{place, steps.Use{Head: head, Item: item, Unit: unit, Quantity: quantity, Basis: basis}})

@@ -24,7 +24,7 @@ func (c *Case) Run(r Route, s Settings) (Run, error) {
 
 // RunTo is Run with a goal (kg/kg) for the last step of its own.
 func (c *Case) RunTo(r Route, s Settings, last float64) (Run, error) {
-	run := Run{Route: r, Settings: s, AgentKg: map[string]float64{}}
+	run := Run{Route: r, Settings: s, AgentKg: map[string]float64{}, Outcomes: make([]steps.Outcome, 0, len(r)), Uses: make([]StageUse, 0, 12*len(r)+8)}
 	lot := c.Feed
 	handOver := make([]float64, 0, len(r))
 	for i, stage := range r {

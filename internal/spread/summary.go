@@ -1,9 +1,9 @@
 package spread
 
 import (
+	"cmp"
 	"math"
 	"slices"
-	"sort"
 
 	"gonum.org/v1/gonum/stat"
 )
@@ -28,7 +28,7 @@ func BandOf(values []float64) Band {
 			sorted[i] = math.Inf(1)
 		}
 	}
-	sort.Float64s(sorted)
+	slices.Sort(sorted)
 	q := func(p float64) float64 { return stat.Quantile(p, stat.LinInterp, sorted, nil) }
 	e := func(p float64) float64 {
 		aside := errorWindow * QuantileError(p, len(sorted))
@@ -64,7 +64,7 @@ func ranks(values []float64) []float64 {
 	for i := range order {
 		order[i] = i
 	}
-	sort.SliceStable(order, func(a, b int) bool { return values[order[a]] < values[order[b]] })
+	slices.SortFunc(order, func(a, b int) int { return cmp.Compare(values[a], values[b]) })
 	out := make([]float64, len(values))
 	for i := 0; i < len(order); {
 		j := i

@@ -59,9 +59,10 @@ func (b *bath) run(goal, timeS float64, dose SoakDose) (Outcome, error) {
 		AgentKg:       doseKg,
 		Losses:        []Loss{{"held by the drained beads", heldKg}},
 	}
-	for i := range soakPoints {
+	o.Course = make([]Point, soakPoints)
+	for i := range o.Course {
 		t := timeS * float64(i) / (soakPoints - 1)
-		o.Course = append(o.Course, Point{Hours: t / secondsPerHour, Water: at(t)})
+		o.Course[i] = Point{Hours: t / secondsPerHour, Water: at(t)}
 	}
 	o.account(b.m.Solvent, b.tempK)
 	takenKg := b.feed.WaterKg - b.feed.SolventKg*ratio
