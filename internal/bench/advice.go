@@ -32,7 +32,7 @@ func (a *Answer) advise() {
 	a.adviseHours()
 	for _, l := range a.Losses {
 		if l.SolventKg > 0 {
-			a.tell("lost", "%s of solvent: %s", quantity.FormatVolume(l.SolventKg/a.Question.KgPerM3(0)), l.Cause)
+			a.tell("lost", "%s of solvent: %s", trace(l.SolventKg/a.Question.KgPerM3(0)), l.Cause)
 		}
 	}
 	for _, d := range a.Discards {
@@ -66,6 +66,15 @@ func (a *Answer) adviseHours() {
 	}
 }
 
+// trace is a volume; what is less than a small drop is told as that.
+func trace(m3 float64) string {
+	const drop = 1e-8 // 0.01 mL
+	if m3 < drop {
+		return "under 0.01 mL"
+	}
+	return quantity.FormatVolume(m3)
+}
+
 // elsewhere is what is used of an item beside the step itself, in words.
 func (a *Answer) elsewhere(item string) string {
 	var parts []string
@@ -79,6 +88,9 @@ func (a *Answer) elsewhere(item string) string {
 
 // weighed is a mass as it is weighed at the bench: in g below a kilogram.
 func weighed(kg float64) string {
+	if kg > 0 && kg < 1e-6 {
+		return "under 1 mg"
+	}
 	if kg < 1 {
 		return quantity.Format(kg, quantity.Mass, "g", 3)
 	}

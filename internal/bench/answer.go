@@ -182,6 +182,17 @@ func (a *Answer) Missed() string {
 	return fmt.Sprintf("%s is not reached: %s", quantity.FormatWater(a.Question.Goal), a.WhyText)
 }
 
+// Instead says what would reach what a step misses, or nothing.
+func (a *Answer) Instead() string {
+	if a.Kind != steps.Forerun {
+		return ""
+	}
+	if better := sparing(a.Case, a.Question); better != "" {
+		return better
+	}
+	return noColumn
+}
+
 // Spans reports whether a band of the outlet is known.
 func (a *Answer) Spans() bool {
 	return !math.IsNaN(a.Low) && !math.IsNaN(a.High) && a.High > a.Low*(1+1e-6)

@@ -32,7 +32,11 @@ func (a *Answer) adviseReceiver() {
 	if a.Carrier != "" {
 		a.adviseCarrier()
 	}
-	a.tell("receiver", "should show about %s mL of aqueous layer%s: stop there; drained %s", quantity.Significant(a.Figure("aqueous layer, each charge"), 3), ofEach(charges), a.drained())
+	if shown := a.Figure("aqueous layer, each charge"); shown < leastSeenML {
+		a.tell("receiver", "shows no aqueous layer that can be read (under %g mL%s)", leastSeenML, ofEach(charges))
+	} else {
+		a.tell("receiver", "should show about %s mL of aqueous layer%s: stop there; drained %s", quantity.Significant(shown, 3), ofEach(charges), a.drained())
+	}
 	proved := steps.ProvedByReading(a.In.MassKg() / charges)
 	a.tell("reading", "repeatable to 0.1 mL, which is %s in this charge: a smaller content cannot be told from the receiver, only by a test", quantity.FormatWater(proved))
 	a.tell("reflux", "%s h%s%s", quantity.Significant(a.Figure("reflux, each charge"), 3), ofEach(charges), a.heldOn())
@@ -40,6 +44,10 @@ func (a *Answer) adviseReceiver() {
 		a.tell("returns", "the %s layer goes back to the pot, the aqueous one is kept", a.Returns)
 	}
 }
+
+// leastSeenML is less aqueous layer than a receiver shows: half of the 0.1 mL to
+// which its reading is repeatable.
+const leastSeenML = 0.05
 
 // heldOn says that a trap is run for longer than the water takes.
 func (a *Answer) heldOn() string {
@@ -70,9 +78,12 @@ func (a *Answer) drained() string {
 // adviseCarrier tells dose and whereabouts of the carrier.
 func (a *Answer) adviseCarrier() {
 	q := a.Question
-	chosen := "as given"
-	if !given(q.DoseKgPerM3) {
-		chosen = "chosen: the least lost of the doses tried"
+	chosen := "chosen: the least lost of the doses tried"
+	if given(q.DoseKgPerM3) {
+		chosen = "as given"
+		if q.FreeWaterM3 > 0 {
+			chosen += fmt.Sprintf(": %s of %s, the free water with it", quantity.FormatConcentration(q.DoseKgPerM3), quantity.FormatVolume(a.CarrierKg/q.DoseKgPerM3))
+		}
 	}
 	a.tell("carrier", "%s of %s, %s", weighed(a.CarrierKg), q.Carrier.Name, chosen)
 	trapped := quantity.FormatWater(a.Figure("water in the pot when the trap stops") / mgPerKg)
@@ -93,15 +104,47 @@ func drawnVolume(litres float64) string {
 
 // adviseDrawing tells which of the two is the product, and when to stop.
 func (a *Answer) adviseDrawing() {
-	charges := a.Figure("still charges")
-	volume := drawnVolume(a.Figure("volume drawn off, each charge"))
+	charges, drawnL := a.Figure("still charges"), a.Figure("volume drawn off, each charge")
 	if a.Overhead {
 		a.tell("product", "what distils over: the solvent boils off first, the wet heel stays behind")
-		a.tell("stop", "when %s%s", volume, ofEach(charges))
 	} else {
 		a.tell("product", "what stays in the pot: the water leaves first, and the forerun is lost")
-		a.tell("stop", "when %s%s, with %s %% of water in it", volume, ofEach(charges), quantity.Significant(a.Figure("water in what is drawn off"), 3))
 	}
-	a.tell("reading", "neither volume nor temperature proves a water content: the last of it moves the head by less than can be read; test the product")
+	switch {
+	case drawnL == 0:
+		a.tell("stop", "at once: nothing is drawn off a lot that is as dry as this can make it")
+		return
+	case a.Overhead:
+		a.tell("stop", "when %s%s%s", drawnVolume(drawnL), ofEach(charges), a.lastOver())
+	case drawnL < wetsGlassL:
+		a.tell("stop", "%s%s: less than wets column and condenser, and too little to steer by; draw some mL and test the pot", drawnVolume(drawnL), ofEach(charges))
+	default:
+		a.tell("stop", "when %s%s, with %s %% of water in it", drawnVolume(drawnL), ofEach(charges), quantity.Significant(a.Figure("water in what is drawn off"), 3))
+	}
+	a.tell("reading", "%s", a.readingOfHead())
 	a.tell("drawing", "%s h over %d stages%s", quantity.Significant(a.Figure("drawing off, each charge"), 3), a.Question.Stages, ofEach(charges))
+}
+
+// wetsGlassL is less than a still holds back on its glass (assumption).
+const wetsGlassL = 1e-3
+
+// plainRiseK is a rise of the head that a thermometer shows beyond doubt.
+const plainRiseK = 1.0
+
+// lastOver warns of a distillate whose last part is the wettest.
+func (a *Answer) lastOver() string {
+	first, last := a.Course[0], a.Course[len(a.Course)-1]
+	if last.HeadK-first.HeadK < plainRiseK {
+		return ""
+	}
+	return fmt.Sprintf("; the head rises to %s by then, and what comes over last is the wettest: stopping sooner leaves a drier product and more solvent behind", quantity.FormatTemperature(last.HeadK))
+}
+
+// readingOfHead says what volume and temperature prove.
+func (a *Answer) readingOfHead() string {
+	first, last := a.Course[0], a.Course[len(a.Course)-1]
+	if a.Overhead && last.HeadK-first.HeadK >= plainRiseK {
+		return "a head that rises says that water comes over; neither volume nor temperature proves a water content: test the product"
+	}
+	return "neither volume nor temperature proves a water content: the last of it moves the head by less than can be read; test the product"
 }

@@ -102,9 +102,19 @@ func lessWasteful(k *routes.Case, q *Question) string {
 	if q.Kind != steps.Forerun {
 		return "a taller column (--stages) parts carrier and solvent better; another dose or carrier may"
 	}
+	if better := sparing(k, q); better != "" {
+		return better
+	}
+	return noColumn
+}
+
+const noColumn = "no column of the catalog does better: another step may"
+
+// sparing names the column over which a forerun comes to what is asked, or nothing.
+func sparing(k *routes.Case, q *Question) string {
 	stages, share, ok := k.SparingColumn(q.Goal)
-	if !ok {
-		return "no column of the catalog does better: a sieve takes this water without such a loss"
+	if !ok || stages == q.Stages {
+		return ""
 	}
 	return fmt.Sprintf("over %d stages it takes %s %%: --stages %d", stages, quantity.Significant(100*share, 2), stages)
 }

@@ -62,7 +62,7 @@ var (
 	anyFree        = limits{0, 10, "0 mL to less than the volume"}
 	anyTemperature = limits{zeroCelsius - 20, zeroCelsius + 100, "-20 °C to 100 °C"}
 	anyReceiver    = limits{zeroCelsius + 1, zeroCelsius + 40, "1 °C to 40 °C; water would freeze in a colder one"}
-	anyPressure    = limits{1e3, 110e3, "1 kPa to 110 kPa, absolute"}
+	anyPressure    = limits{1e3, 110e3, "1 kPa to 110 kPa (10 hPa to 1100 hPa), absolute"}
 	anyPower       = limits{10, 1e5, "10 W to 100 kW"}
 	anyHeight      = limits{0.01, 5, "0.01 m to 5 m"}
 	anyPeroxide    = limits{0, 10, "0 mg/L to 10000 mg/L"}

@@ -14,6 +14,9 @@ import (
 func (a *Answer) warn(ofLot []string) {
 	a.Warnings = append(a.Warnings, ofLot...)
 	a.Warnings = append(a.Warnings, a.Outcome.Warnings...)
+	if a.Kind != steps.Settle {
+		a.warnOfTwoLayers()
+	}
 	switch a.Kind {
 	case steps.Soak:
 		a.warnSoak()
@@ -38,6 +41,16 @@ func (a *Answer) warn(ofLot []string) {
 		seen[w] = true
 		return again
 	})
+}
+
+// warnOfTwoLayers says where more water is named than the solvent dissolves.
+func (a *Answer) warnOfTwoLayers() {
+	q := a.Question
+	holds, partly, err := a.Case.Mixture.Solubility(q.TempK)
+	if err == nil && partly && q.Water > holds*(1+1e-3) {
+		a.warning("%s dissolves %s of water at %s: the rest of the %s stands as a layer or droplets, computed with the lot; let it settle first",
+			q.Solvent.Name, quantity.FormatWater(holds), quantity.FormatTemperature(q.TempK), quantity.FormatWater(q.Water))
+	}
 }
 
 func (a *Answer) warning(format string, args ...any) {

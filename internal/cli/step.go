@@ -29,7 +29,7 @@ func (p *program) step() *cli.Command {
 			&cli.StringFlag{Name: "to", Usage: "water `W` wanted: solves for the dose or the time"},
 			&cli.StringFlag{Name: "agent", Usage: "drying agent `A`, such as sieve-3a"},
 			&cli.StringFlag{Name: "dose", Usage: "dose `D` of the agent per volume, such as \"100 g/L\", \"10 % m/v\" or \"10 % m/m\""},
-			&cli.StringFlag{Name: "hours", Usage: "time `T` of soak, salt or reflux; a bare number is hours"},
+			&cli.StringFlag{Name: "hours", Usage: "time `T` of a soak, a salt or a reactive reflux; of a trap an upper limit on its reflux; a bare number is hours"},
 			&cli.StringFlag{Name: "charges", Usage: "number `N` of equal charges that make up the dose, one after the other, each for --hours"},
 			onOff("stirred", "stir the soak; else it stands still"),
 			onOff("powder", "the sieve is a powder; else it is beads"),
@@ -40,7 +40,7 @@ func (p *program) step() *cli.Command {
 			&cli.StringFlag{Name: "temperature", Usage: "temperature `T` of the lot and the room (default: the catalog's)"},
 			&cli.StringFlag{Name: "power", Usage: "power `P` of the heater (default: the still's own)"},
 			&cli.StringFlag{Name: "receiver", Usage: "temperature `T` of the trap's receiver (default: the catalog's)"},
-			&cli.StringFlag{Name: "pressure", Usage: "pressure `P`, 1 to 110 kPa (default: the catalog's)"},
+			&cli.StringFlag{Name: "pressure", Usage: "absolute pressure `P`, 1 to 110 kPa, in hPa, kPa, mbar or mmHg (default: the catalog's)"},
 			&cli.StringFlag{Name: "peroxide", Usage: "peroxide reading `C`, wanted before a peroxide former is heated"},
 			&cli.StringFlag{Name: "reagent", Usage: "amount `N` of a reagent in the lot: water in mol % of it"},
 			&cli.StringFlag{Name: "carrier", Usage: "carrier `C` that boils the water out under a trap; --dose, where it is not chosen, is of it"},
@@ -154,7 +154,7 @@ func (p *program) showStep(c *cli.Context, a *bench.Answer) (err error) {
 		err = report.StepText(p.stdout, a)
 	}
 	if missed := a.Missed(); err == nil && missed != "" {
-		err = errors.New(missed)
+		return &failure{status: statusFailed, err: errors.New(missed), hint: a.Instead()}
 	}
 	return failed(err)
 }

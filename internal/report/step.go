@@ -93,6 +93,8 @@ func (p *page) stepResult(a *bench.Answer) {
 	if a.Spans() {
 		p.topic("Between", "%s and %s, with all of these at their good or at their bad ends: %s",
 			quantity.FormatWater(a.Low), quantity.FormatWater(a.High), strings.Join(a.Bands, "; "))
+	} else if len(a.Bands) > 0 {
+		p.topic("Between", "%s at both ends of %s", quantity.FormatWater(a.Out.Water()), strings.Join(a.Bands, "; "))
 	} else if a.Why != steps.AtTarget {
 		p.topic("Between", "no band is known")
 	}
@@ -118,7 +120,7 @@ func freeWater(q *bench.Question) string {
 	if q.FreeWaterM3 == 0 {
 		return ""
 	}
-	return fmt.Sprintf(" dissolved, and %s of free water beside it", quantity.FormatVolume(q.FreeWaterM3))
+	return fmt.Sprintf(", and %s of free water beside it", quantity.FormatVolume(q.FreeWaterM3))
 }
 
 // reasoned is a text that begins with the word of its reason.

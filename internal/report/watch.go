@@ -1,6 +1,8 @@
 package report
 
 import (
+	"math"
+
 	"parch/internal/bench"
 	"parch/internal/quantity"
 	"parch/internal/steps"
@@ -22,7 +24,7 @@ func (p *page) watch(a *bench.Answer) {
 		columns = append(columns, column{"Carrier\n%", true, 0}, column{"Drawn off\nmL", true, 0})
 	}
 	if a.Overhead { // what is not distilled over yet
-		columns = append(columns, column{"Still in pot\n%", true, 0})
+		columns = append(columns, column{"Solvent in pot\n%", true, 0})
 	} else {
 		columns = append(columns, column{"Solvent lost\n%", true, 0})
 	}
@@ -37,22 +39,30 @@ func (p *page) watch(a *bench.Answer) {
 		if a.Carrier != "" {
 			row = append(row, quantity.Significant(100*pt.Carrier, 3), drawn(pt.DrawnM3))
 		}
-		rows = append(rows, append(row, quantity.Significant(100*pt.LostShare, 3)))
+		rows = append(rows, append(row, perCent(pt.LostShare)))
 	}
 	p.table(columns, rows)
 }
 
-// drawn is a volume in mL; what is far below a drop is none.
+// drawn is a volume in mL; what is far below a drop is none, a small drop no number.
 func drawn(m3 float64) string {
-	if m3 < 1e-10 {
+	switch {
+	case m3 < 1e-10:
 		return "0"
+	case m3 < 1e-8:
+		return "< 0.01"
 	}
 	return quantity.Significant(m3*1e6, 3)
 }
 
-// watched is the water of a pot, no drier than is claimed for a trap in the end.
+// watched is the water of a pot or of what has come over, no drier than is claimed in
+// the end: of a trap the outlet, of a forerun the least that is claimed of any.
 func (p *page) watched(a *bench.Answer, water float64) string {
-	if claimed := a.Out.Water(); a.Kind == steps.Trap && water < claimed*(1-1e-6) {
+	claimed := a.Out.Water()
+	if a.Kind == steps.Forerun {
+		claimed = math.Min(claimed, a.Case.Catalog.Practice["trap-outlet-minimum"].SI)
+	}
+	if water < claimed*(1-1e-6) {
 		return "< " + mgKg(claimed)
 	}
 	return traceOf(water)
@@ -68,3 +78,11 @@ func traceOf(water float64) string {
 
 // kelvins is a temperature in °C to a tenth.
 func kelvins(k float64) string { return quantity.Significant(k-273.15, 4) }
+
+// perCent of the solvent; what is less than a thousandth of one is told as that.
+func perCent(share float64) string {
+	if share > 0 && share < 1e-5 {
+		return "< 0.001"
+	}
+	return quantity.Significant(100*share, 3)
+}

@@ -39,7 +39,11 @@ func (c *Case) runForerun(lot steps.Lot, goal float64, choice choice) (steps.Out
 		o.Apparatus = column.Key
 	}
 	if lost := o.Balance.SolventRemovedKg / lot.SolventKg; lost > wastefulForerun {
-		return o, wasteful{lost, fmt.Errorf("a forerun over %d stages would take %.0f %% of the lot with it", choice.stages, 100*lost)}
+		does := "take %.0f %% of the lot with it"
+		if o.Overhead {
+			does = "leave %.0f %% of the lot in the pot"
+		}
+		return o, wasteful{lost, fmt.Errorf("a forerun over %d stages would "+does, choice.stages, 100*lost)}
 	}
 	return o, nil
 }

@@ -96,7 +96,7 @@ func (r refusal) Unwrap() error { return r.error }
 // refused marks the errors that say that a step does not work on this lot.
 func refused(err error) error {
 	for _, known := range []error{steps.ErrNoTrap, steps.ErrNothingSettles, steps.ErrWetSieve, steps.ErrUnfit, steps.ErrNoSense,
-		steps.ErrNoForerun, steps.ErrNoColumn, steps.ErrSaltTooWarm, steps.ErrPreDry, steps.ErrHeater, steps.ErrNoCarrier} {
+		steps.ErrNoForerun, steps.ErrNoColumn, steps.ErrSaltTooWarm, steps.ErrPreDry, steps.ErrHeater, steps.ErrBoilUp, steps.ErrNoCarrier} {
 		if errors.Is(err, known) {
 			return refusal{err}
 		}
@@ -227,7 +227,7 @@ func (c *Case) boilOut(lot steps.Lot, goal float64, choice choice) (steps.Outcom
 	if choice.goesOn {
 		rules.ShutDownS = 0
 	}
-	rules.LongestRefluxS = choice.longestS
+	rules.LongestRefluxS, rules.Closely = choice.longestS, choice.watched
 	o, err := steps.RunTrap(trap, lot, goal, steps.TrapRig{
 		HeaterW: c.heaterW(still), HeatShare: c.practice("heat-share"), Returns: receiver.Returns,
 		FillVolumeM3: receiver.FillVolume.SI, UsableVolumeM3: receiver.Volume.SI,

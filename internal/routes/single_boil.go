@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"math"
 
+	"parch/internal/quantity"
 	"parch/internal/steps"
 )
 
@@ -13,11 +14,37 @@ func (c *Case) singleTrap(a Asked, s *Single) (err error) {
 	if a.Carrier != "" {
 		return c.singleCarrier(a, s)
 	}
-	s.Outcome, err = c.boilOut(c.Feed, orZero(a.Goal), choice{longestS: orZero(a.TimeS)})
-	if err == nil && s.Why != steps.AtTime {
-		c.bandOfSolubility(s, func(factor float64) float64 { return c.trapOutlet(orZero(a.Goal), factor) })
+	asked := choice{longestS: orZero(a.TimeS), watched: true}
+	s.Outcome, err = c.boilOut(c.Feed, orZero(a.Goal), asked)
+	switch {
+	case err != nil:
+		return err
+	case s.Why == steps.AtTime:
+		return c.bandOfEfficiency(orZero(a.Goal), asked, s)
 	}
-	return err
+	goal := math.Min(orZero(a.Goal), s.Out.Water()) // filling the receiver may go past it
+	c.bandOfSolubility(s, func(factor float64) float64 { return c.trapOutlet(goal, factor) })
+	return nil
+}
+
+// bandOfEfficiency takes a trap that a time ends to both ends of the efficiency that
+// is common practice at low water.
+func (c *Case) bandOfEfficiency(goal float64, asked choice, s *Single) error {
+	v := c.Catalog.Practice["trap-efficiency"]
+	if !v.Banded() {
+		return nil
+	}
+	low, high := s.Out.Water(), s.Out.Water()
+	for _, efficiency := range []float64{v.Low, v.High} {
+		o, err := c.WithPractice(map[string]float64{"trap-efficiency": efficiency}).boilOut(c.Feed, goal, asked)
+		if err != nil {
+			return err
+		}
+		low, high = math.Min(low, o.Out.Water()), math.Max(high, o.Out.Water())
+	}
+	s.Low, s.High = low, high
+	s.Bands = append(s.Bands, fmt.Sprintf("efficiency below %s, %s to %s", quantity.FormatWater(c.practice("trap-efficiency-below")), quantity.FormatShare(v.Low), quantity.FormatShare(v.High)))
+	return nil
 }
 
 // trapOutlet is where a trap ends whose floor is off by a factor.
@@ -66,7 +93,7 @@ func (c *Case) singleCarrier(a Asked, s *Single) error {
 		return wasteful{lost, fmt.Errorf("boiling out with %s and stripping it over %d stages would take %.0f %% of the lot with it", a.Carrier, a.Stages, 100*lost)}
 	}
 	s.Apparatus = receiver.Key
-	c.warnOfHotPot(&s.Outcome)
+	c.warnOfHotPot(&s.Outcome, asAsked)
 	c.bandOfLayers(s, eq, plan, rigFor(plan.DoseKg), rules)
 	return nil
 }
@@ -99,13 +126,16 @@ type wasteful struct {
 func (w wasteful) Is(target error) bool { return target == ErrRefused || target == ErrWasteful }
 
 // SparingColumn is the shortest column of the catalog over which a forerun of the
-// lot to goal (kg/kg; NaN: as far as it goes) is worth while, and the share of the
-// solvent that it takes; ok is false where none is.
+// lot comes to goal (kg/kg; NaN: makes it drier) and is worth while, and the share of
+// the solvent that it takes; ok is false where none is.
 func (c *Case) SparingColumn(goal float64) (stages int, share float64, ok bool) {
+	const rounding = 1e-6
 	for _, n := range c.ColumnStages() {
-		if o, err := c.runForerun(c.Feed, orZero(goal), choice{stages: n}); err == nil {
-			return n, o.Balance.SolventRemovedKg / c.Feed.SolventKg, true
+		o, err := c.runForerun(c.Feed, orZero(goal), choice{stages: n})
+		if err != nil || o.Out.Water() >= c.Feed.Water()*(1-rounding) || given(goal) && o.Out.Water() > goal*(1+rounding) {
+			continue
 		}
+		return n, o.Balance.SolventRemovedKg / c.Feed.SolventKg, true
 	}
 	return 0, 0, false
 }

@@ -77,6 +77,7 @@ type choice struct {
 	dose      float64 // of a carrier, kg per kg of solvent
 	carrier   string  // that the trap before has left in the pot
 	longestS  float64 // of a trap, under reflux; 0: no limit
+	watched   bool    // somebody stands at the trap: its course is told closely
 }
 
 // at returns the choices of stage i.

@@ -71,7 +71,7 @@ func (r *refluxing) share(o *Outcome, n, vapourShare float64) {
 	}
 	if r.half != stripOnly {
 		o.Losses = append(o.Losses, Loss{"dissolved in the aqueous layer", kg(r.s.aqueous, inSolvent)}, Loss{"organic layer left in the receiver", kg(r.s.held, inSolvent)})
-		o.Discards = append(o.Discards, Discard{AqueousWaste, "aqueous layer", n * r.massKg(r.s.aqueous)}, Discard{SolventWaste, "organic layer left in the receiver", n * r.massKg(r.s.held)})
+		o.Discards = append(o.Discards, Discard{r.classOf(r.s.aqueous), "aqueous layer", n * r.massKg(r.s.aqueous)}, Discard{SolventWaste, "organic layer left in the receiver", n * r.massKg(r.s.held)})
 	}
 	if r.half != trapOnly {
 		o.Losses = append(o.Losses, Loss{strippedOff, kg(r.s.drawn, inSolvent)})
@@ -85,6 +85,15 @@ func (r *refluxing) share(o *Outcome, n, vapourShare float64) {
 	o.Balance.WaterRemovedKg = gone[inWater] - regained
 	o.Balance.CarrierRemovedKg = gone[inCarrier]
 	o.CarrierLostKg = gone[inCarrier]
+}
+
+// classOf is the class of waste of a layer: of an alcohol the aqueous one may hold more
+// of it than of water.
+func (r *refluxing) classOf(layer Fractions) WasteClass {
+	if r.kg(layer[inWater], inWater) > r.massKg(layer)/2 {
+		return AqueousWaste
+	}
+	return SolventWaste
 }
 
 const strippedOff = "stripped off with the carrier"

@@ -185,8 +185,9 @@ func (r *refluxing) start(feed Lot) error {
 		return err
 	}
 	r.startK = r.near[0].TempK
-	if r.startK <= r.rig.RoomK {
-		return fmt.Errorf("%w: the pot boils at %.1f °C at %.4g kPa, not above the room's %.1f °C", ErrNoCarrier, r.startK-273.15, r.eq.PressurePa/1e3, r.rig.RoomK-273.15)
+	whole := scaled(r.s.pot, 1/total(r.s.pot))
+	if err := boilsInTheRoom("the pot", r.startK, r.rig.RoomK, r.eq.PressurePa, func(tK float64) float64 { return r.m.BubblePressure(whole, tK) }); err != nil {
+		return fmt.Errorf("%w: %w", ErrNoCarrier, err)
 	}
 	if err := r.checkCoolant(); err != nil {
 		return fmt.Errorf("%w: %w", ErrNoCarrier, err)
@@ -196,7 +197,8 @@ func (r *refluxing) start(feed Lot) error {
 		fromK = r.rig.RoomK
 	}
 	r.heatUpJ = r.sensible(r.s.pot, math.Min(fromK, r.startK), r.startK)
-	return checkHeater(r.heatUpJ, r.netW(), r.rules.LongestHeatUpS, total(r.s.pot)*r.m.MolarVolume(scaled(r.s.pot, 1/total(r.s.pot)), r.rig.RoomK))
+	charge := hotCharge{r.heatUpJ, total(r.s.pot) * r.m.MolarVolume(whole, r.rig.RoomK), r.startK - r.rig.RoomK}
+	return checkHeater(r.rig.HeaterW, r.rig.HeatShare, r.rules.LongestHeatUpS, charge)
 }
 
 // checkCoolant refuses a vapour that the condenser does not take. The lowest at

@@ -50,15 +50,56 @@ func roundedUp(x float64) float64 {
 	return math.Ceil(x/place) * place
 }
 
+// boilsInTheRoom refuses a pot that boils before it is heated; enoughPa is the
+// pressure at which it boils at a temperature.
+func boilsInTheRoom(pot string, startK, roomK, pressurePa float64, enoughPa func(tK float64) float64) error {
+	if startK > roomK {
+		return nil
+	}
+	return fmt.Errorf("%s boils at %.1f °C at %.4g kPa, not above the room's %.1f °C, which takes more than %.2g kPa",
+		pot, startK-273.15, pressurePa/1e3, roomK-273.15, roundedUp(enoughPa(roomK)/1e3))
+}
+
+const (
+	// flaskLossWPerM2K is the least that an insulated flask loses to the room, over
+	// the area of a ball of the charge (assumption: still air and its radiation behind
+	// some centimetres of wool).
+	flaskLossWPerM2K = 5.0
+	// mostCondensedW is what the largest glass condensers of a laboratory or a pilot
+	// hall take up (assumption: 1 m2 of coil, 300 W/(m2 K) and some 35 K).
+	mostCondensedW = 10e3
+)
+
+// hotCharge is a charge that is to be brought to the boil and kept there.
+type hotCharge struct {
+	heatUpJ, volumeM3, warmerK float64 // warmer than the room
+}
+
+// lossW is what it loses to the room at least.
+func (h hotCharge) lossW() float64 {
+	areaM2 := math.Cbrt(36*math.Pi) * math.Pow(h.volumeM3, 2.0/3)
+	return flaskLossWPerM2K * areaM2 * h.warmerK
+}
+
 // checkHeater refuses a heater that takes longer than longestS (0: no limit) to
-// bring a charge to the boil.
-func checkHeater(heatUpJ, netW, longestS, chargeM3 float64) error {
+// bring a charge to the boil or does not make up for what the flask loses, and one
+// whose vapour no condenser takes up.
+func checkHeater(heaterW, heatShare, longestS float64, h hotCharge) error {
+	netW, litres := heaterW*heatShare, h.volumeM3*litrePerM3
 	if !(netW > 0) {
 		return fmt.Errorf("%w: no heat reaches the liquid", ErrHeater)
 	}
-	if heatUpS := heatUpJ / netW; longestS > 0 && heatUpS > longestS {
+	if heatUpS := h.heatUpJ / netW; longestS > 0 && heatUpS > longestS {
 		return fmt.Errorf("%w: %.4g W in the liquid take %.3g h to bring %.3g L to the boil, the limit is %.3g h",
-			ErrHeater, netW, heatUpS/secondsPerHour, chargeM3*litrePerM3, longestS/secondsPerHour)
+			ErrHeater, netW, heatUpS/secondsPerHour, litres, longestS/secondsPerHour)
+	}
+	if lossW := h.lossW(); heaterW < lossW {
+		return fmt.Errorf("%w: %.4g W do not keep %.3g L at the boil: %.0f K above the room it loses %.3g W at least in an insulated flask (%.2g W per m2 and K, assumption)",
+			ErrHeater, heaterW, litres, h.warmerK, lossW, flaskLossWPerM2K)
+	}
+	if netW > mostCondensedW {
+		return fmt.Errorf("%w: %.3g kW of vapour come off %.3g L, and the largest glass condensers take up about %.3g kW (assumption)",
+			ErrBoilUp, netW/1e3, litres, mostCondensedW/1e3)
 	}
 	return nil
 }

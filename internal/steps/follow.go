@@ -72,7 +72,7 @@ func ForerunTable(eq *ForerunEquilibrium, rig ForerunRig, waters []float64) (nod
 		if d.at, err = d.sample(logit(d.x0)); err != nil {
 			return nil, false
 		}
-		if err := d.march(end, math.Inf(-1), func() float64 { return math.Inf(-1) }); err != nil {
+		if err := d.march(end, func() float64 { return math.Inf(-1) }); err != nil {
 			return nil, false
 		}
 		n.LnLeft, n.HeatJ = from.LnLeft+d.lnLeft, from.HeatJ+d.boilUpJ

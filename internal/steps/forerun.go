@@ -17,8 +17,11 @@ var ErrNoForerun = errors.New("a forerun does not work here")
 // ErrHeater means that the heater is too weak for the charge.
 var ErrHeater = errors.New("the heater is too weak")
 
-// LeastHeel is the share of a charge that always stays in the pot: a still is
-// never boiled dry.
+// ErrBoilUp means that the heater boils up more vapour than a condenser takes.
+var ErrBoilUp = errors.New("the heater is too strong")
+
+// LeastHeel is the share of a charge, of its mass and of its moles, that always stays
+// in the pot: a still is never boiled dry.
 const LeastHeel = 0.10
 
 // MostStages is the tallest column that is modelled.
@@ -131,8 +134,8 @@ func (eq *ForerunEquilibrium) climbOnce(x float64, stages int, guessK float64) (
 	return pot, head, nil
 }
 
-// RunForerun draws distillate off a lot until goal (kg/kg) or the heel is
-// reached. Where water is the more volatile, or leaves with the azeotrope, the
+// RunForerun draws distillate off a lot until goal (kg/kg; 0: as far as it goes) or
+// the heel is reached. Where water is the more volatile, or leaves with the azeotrope, the
 // dry solvent stays in the pot and the distillate is lost; where the solvent is
 // the more volatile, the distillate is the product and a wet heel stays behind.
 //
@@ -148,7 +151,7 @@ func RunForerun(eq *ForerunEquilibrium, feed Lot, goal float64, rig ForerunRig, 
 	if err := d.start(feed); err != nil {
 		return Outcome{}, err
 	}
-	goal = math.Max(goal, rules.LowestOutlet)
+	d.goal = goal
 	var err error
 	if d.overhead {
 		err = d.collect(goal)
@@ -158,7 +161,7 @@ func RunForerun(eq *ForerunEquilibrium, feed Lot, goal float64, rig ForerunRig, 
 	if err != nil {
 		return Outcome{}, err
 	}
-	return d.outcome(feed, goal), nil
+	return d.outcome(feed), nil
 }
 
 // CheckForerun says whether a lot can be brought to the boil and drawn over at all,
@@ -192,6 +195,7 @@ type drawing struct {
 	startK   float64
 	heatUpJ  float64
 
+	goal         float64 // kg/kg that ends it, no lower than may be claimed; 0: none
 	at           point
 	lnLeft       float64 // ln(moles in the pot/moles charged)
 	boilUpJ      float64
@@ -240,7 +244,8 @@ func (d *drawing) start(feed Lot) error {
 		mid := (d.startK + d.tempK) / 2
 		d.heatUpJ = (water*d.m.Water.HeatCapacityJPerMolK.At(mid) + solvent*d.m.Solvent.HeatCapacityJPerMolK.At(mid)) * (d.startK - d.tempK)
 	}
-	if err := checkHeater(d.heatUpJ, d.netW(), d.rules.LongestHeatUpS, d.mol0*d.m.MolarVolume(d.x0, d.rig.RoomK)); err != nil {
+	charge := hotCharge{d.heatUpJ, d.mol0 * d.m.MolarVolume(d.x0, d.rig.RoomK), d.startK - d.rig.RoomK}
+	if err := checkHeater(d.rig.HeaterW, d.rig.HeatShare, d.rules.LongestHeatUpS, charge); err != nil {
 		return err
 	}
 	return d.choose()
@@ -265,8 +270,8 @@ func (d *drawing) choose() error {
 
 func (d *drawing) checkTemperatures() error {
 	kPa := d.eq.PressurePa / 1e3
-	if d.startK <= d.rig.RoomK {
-		return fmt.Errorf("%w: %s boils at %.1f °C at %.4g kPa, not above the room's %.1f °C", ErrNoForerun, d.m.Solvent.Called(), d.startK-273.15, kPa, d.rig.RoomK-273.15)
+	if err := boilsInTheRoom(d.m.Solvent.Called()+" with its water", d.startK, d.rig.RoomK, d.eq.PressurePa, func(tK float64) float64 { return d.m.BubblePressure(d.x0, tK) }); err != nil {
+		return fmt.Errorf("%w: %w", ErrNoForerun, err)
 	}
 	if err := d.checkCoolant(); err != nil {
 		return fmt.Errorf("%w: %w", ErrNoForerun, err)
@@ -294,19 +299,38 @@ func (d *drawing) checkCoolant() error {
 func (d *drawing) netW() float64 { return d.rig.HeaterW * d.rig.HeatShare }
 
 // reached words the reason for stopping, and says which of the two is the product.
-func (d *drawing) reached(goal float64) string {
+func (d *drawing) reached(feed Lot) string {
 	product := "; the pot is the product"
-	if d.overhead {
+	switch {
+	case d.why == AtWater:
+		product = "; the distillate is the product"
+	case d.overhead:
 		product = "; the distillate is the product, the wet heel stays behind"
 	}
+	if lowest := d.rules.LowestOutlet; d.overhead && d.drawn().water() < lowest*(1-1e-6) {
+		product += fmt.Sprintf(": computed at %s, but moist air keeps an outlet at %s or more", quantity.FormatWater(d.drawn().water()), quantity.FormatWater(lowest))
+	}
+	return d.reason(feed) + product
+}
+
+func (d *drawing) reason(feed Lot) string {
+	ofMass, lowest := quantity.FormatShare(d.leftOfMass()), quantity.FormatWater(d.rules.LowestOutlet)
 	switch d.why {
 	case AtHeel:
-		return fmt.Sprintf("heel: %.0f %% of the charge stays in the pot", 100*d.rules.HeelShare) + product
+		if ofMoles := quantity.FormatShare(math.Exp(d.lnLeft)); ofMoles != ofMass && math.Exp(d.lnLeft) < d.leftOfMass() {
+			ofMass += fmt.Sprintf(" (%s of its moles)", ofMoles)
+		}
+		return fmt.Sprintf("heel: %s of the charge stays in the pot", ofMass)
+	case AtWater:
+		return fmt.Sprintf("only water left: the solvent has come over, and the %s of the charge that stays in the pot is water", ofMass)
 	case AtFloor:
-		return fmt.Sprintf("floor: even the first distillate holds %s", quantity.FormatWater(d.m.MassFraction(d.firstY))) + product
+		return fmt.Sprintf("floor: even the first distillate holds %s, all of it %s", quantity.FormatWater(d.m.MassFraction(d.firstY)), quantity.FormatWater(d.drawn().water()))
 	case AtPractice:
-		return fmt.Sprintf("practical limit: moist air keeps an outlet at %s or more", quantity.FormatWater(d.rules.LowestOutlet)) + product
+		if feed.Water() <= d.rules.LowestOutlet {
+			return fmt.Sprintf("practical limit: the lot holds %s, and moist air keeps an outlet at %s or more: nothing is drawn off", quantity.FormatWater(feed.Water()), lowest)
+		}
+		return fmt.Sprintf("practical limit: moist air keeps an outlet at %s or more", lowest)
 	default:
-		return fmt.Sprintf("hand-over at %s reached", quantity.FormatWater(goal)) + product
+		return fmt.Sprintf("hand-over at %s reached", quantity.FormatWater(d.goal))
 	}
 }

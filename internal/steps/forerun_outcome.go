@@ -12,7 +12,7 @@ import (
 const wastefulShare = 0.25
 
 // outcome turns one charge into the whole lot's account.
-func (d *drawing) outcome(feed Lot, goal float64) Outcome {
+func (d *drawing) outcome(feed Lot) Outcome {
 	n := float64(d.rig.Charges)
 	heatUpS, drawS := d.heatUpJ/d.netW(), d.boilUpJ/d.netW()
 	settleS := 0.0
@@ -22,7 +22,7 @@ func (d *drawing) outcome(feed Lot, goal float64) Outcome {
 	hotS := heatUpS + settleS + drawS
 	o := Outcome{
 		Kind: Forerun, In: feed, Floor: math.NaN(),
-		Why: d.why, WhyText: d.reached(goal),
+		Why: d.why, WhyText: d.reached(feed),
 		HoursTotal:    (d.rules.SetUpS + n*(hotS+d.rules.ShutDownS)) / secondsPerHour,
 		HoursAttended: (d.rules.SetUpS + n*(hotS*d.rules.AttendedShare+d.rules.ShutDownS)) / secondsPerHour,
 		EnergyKWh:     n * d.rig.HeaterW * hotS / joulePerKWh,
@@ -55,7 +55,8 @@ func (d *drawing) share(o *Outcome, n, vapourShare float64) {
 	vapourWaterKg, vapourKg := product.waterKg*vapourShare, product.solventKg*vapourShare
 	o.Out = Lot{SolventKg: n * (product.solventKg - vapourKg), TempK: d.rig.RoomK}
 	waterKg := product.waterKg - vapourWaterKg
-	claimedKg := math.Min(water0, (product.solventKg-vapourKg)*d.rules.LowestOutlet/(1-d.rules.LowestOutlet))
+	claimed := math.Min(d.rules.LowestOutlet, o.In.Water()) // no lot is claimed to come out wetter than it was
+	claimedKg := (product.solventKg - vapourKg) * claimed / (1 - claimed)
 	o.Out.WaterKg = n * math.Max(waterKg, claimedKg)
 	o.Losses = []Loss{{cause, n * rest.solventKg}, {"vapour past the condenser", n * vapourKg}}
 	class := SolventWaste
@@ -64,6 +65,9 @@ func (d *drawing) share(o *Outcome, n, vapourShare float64) {
 	}
 	o.Discards = []Discard{{class, what, n * (rest.waterKg + rest.solventKg)}}
 	o.Balance.WaterRemovedKg = n * (rest.waterKg + vapourWaterKg - math.Max(0, claimedKg-waterKg))
+	if o.In.Water() <= d.rules.LowestOutlet {
+		o.Warnings = append(o.Warnings, "nothing is gained: the lot is as dry as drawing off can make it")
+	}
 	if lost := rest.solventKg / solvent0; lost > wastefulShare && !d.overhead {
 		o.Warnings = append(o.Warnings, fmt.Sprintf("%.0f %% of the solvent is drawn off with the water", 100*lost))
 	}

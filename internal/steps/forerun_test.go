@@ -108,30 +108,148 @@ func TestFirstDropFollowsFenske(t *testing.T) {
 }
 
 // The distillate of an ideal mixture whose water is the heavy one, by the same form.
+// The wet heel is lighter by the mole than the charge, so a tenth of the mass is left
+// before a tenth of the moles:
+//
+//	m/m0 = N/N0 (x M_w + (1 - x) M_s)/(x0 M_w + (1 - x0) M_s)
 func TestIdealProductOverhead(t *testing.T) {
-	m := ideal(1 / 3.0)
-	const x0, left = 0.02, 0.10 // to the heel
-	// solve the closed form for the water of the pot at N/N0 = left
-	lo, hi := x0, 0.999
-	for range 200 {
-		x := (lo + hi) / 2
-		lnN := -(math.Log(x0/x) - math.Log((1-x0)/(1-x))/3) / (1/3.0 - 1)
-		if lnN > math.Log(left) {
-			lo = x
-		} else {
-			hi = x
+	for _, c := range []struct {
+		volatility, x0, goal float64
+	}{{1 / 3.0, 0.02, 0}, {1 / 3.0, 0.02, 0.9}, {1 / 3.0, 0.3, 0}, {1 / 8.0, 0.05, 0}, {1 / 1.5, 0.6, 0}} {
+		m := ideal(c.volatility)
+		molar0 := c.x0*m.Water.MolarMassKgPerMol + (1-c.x0)*m.Solvent.MolarMassKgPerMol
+		left := func(x float64) float64 {
+			return math.Exp((math.Log(x/c.x0) + c.volatility*math.Log((1-c.x0)/(1-x))) / (c.volatility - 1))
+		}
+		ofMass := func(x float64) float64 {
+			return left(x) * (x*m.Water.MolarMassKgPerMol + (1-x)*m.Solvent.MolarMassKgPerMol) / molar0
+		}
+		lo, hi := c.x0, 1-1e-12
+		for range 200 {
+			if x := (lo + hi) / 2; ofMass(x) > steps.LeastHeel {
+				lo = x
+			} else {
+				hi = x
+			}
+		}
+		water := (c.x0 - left(lo)*lo) / (1 - left(lo))
+		feed := molar(m, c.x0)
+		o, err := steps.RunForerun(boiler(t, m, atmospherePa), feed, c.goal, still(0), drawingRules)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if o.Why != steps.AtHeel || !strings.Contains(o.WhyText, "10 % of the charge stays in the pot") {
+			t.Errorf("%+v: stopped for %s: %s", c, o.Why, o.WhyText)
+		}
+		near(t, "water of the distillate", m.MoleFraction(o.Out.Water()), water, 0.001)
+		near(t, "product", o.Out.MassKg(), 0.9*feed.MassKg(), 1e-6)
+	}
+}
+
+// Of an ideal mixture over enough stages the distillate is dry until the pot is
+// water: all the solvent comes over, and all the water stays (a limit that needs no
+// data). The goal is not what ends it.
+func TestOnlyWaterIsLeft(t *testing.T) {
+	m := ideal(1 / 8.0)
+	feed := molar(m, 0.6) // 27.3 % of its mass; a thousandth of solvent is 0.1 % more
+	for _, goal := range []float64{0, 0.01} {
+		o, err := steps.RunForerun(boiler(t, m, atmospherePa), feed, goal, still(12), drawingRules)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if o.Why != steps.AtWater || !strings.Contains(o.WhyText, "27.4 % of the charge") {
+			t.Errorf("to %g: stopped for %s: %s", goal, o.Why, o.WhyText)
+		}
+		near(t, "product", o.Out.SolventKg, feed.SolventKg, 0.005)
+		if o.Out.Water() > 1e-6 || o.Losses[0].SolventKg > 0.005*feed.SolventKg {
+			t.Errorf("to %g: the product holds %g water, the heel %g kg of solvent", goal, o.Out.Water(), o.Losses[0].SolventKg)
 		}
 	}
-	water := (x0 - left*lo) / (1 - left)
-	o, err := steps.RunForerun(boiler(t, m, atmospherePa), molar(m, x0), 0.9, still(0), drawingRules)
-	if err != nil {
+}
+
+// The least outlet bounds what is claimed of a distillate, not how far it is drawn:
+// without a goal the same is drawn with the bound and without it. A goal below the
+// bound is the bound, a goal above it ends the drawing where all that was collected
+// holds it.
+func TestLeastOutletIsAClaim(t *testing.T) {
+	m := ideal(1 / 8.0)
+	eq, feed := boiler(t, m, atmospherePa), molar(m, 0.05)
+	bounded := drawingRules
+	bounded.LowestOutlet = 0.01
+	free, errA := steps.RunForerun(eq, feed, 0, still(0), drawingRules)
+	bound, errB := steps.RunForerun(eq, feed, 0, still(0), bounded)
+	if err := errors.Join(errA, errB); err != nil {
 		t.Fatal(err)
 	}
-	if o.Why != steps.AtHeel {
-		t.Errorf("stopped for %s", o.Why)
+	if free.Out.Water() >= 0.01 || bound.Why != steps.AtHeel || !strings.Contains(bound.WhyText, "computed at") {
+		t.Errorf("%g; %s: %s", free.Out.Water(), bound.Why, bound.WhyText)
 	}
-	near(t, "water of the distillate", m.MoleFraction(o.Out.Water()), water, 0.001)
-	near(t, "product", o.Out.SolventKg/m.Solvent.MolarMassKgPerMol+o.Out.WaterKg/m.Water.MolarMassKgPerMol, 900, 0.001)
+	near(t, "drawn", bound.Out.SolventKg, free.Out.SolventKg, 1e-9)
+	near(t, "claimed", bound.Out.Water(), 0.01, 1e-9)
+	for _, c := range []struct {
+		goal, holds float64
+		why         steps.Stop
+	}{{0.003, 0.003, steps.AtTarget}, {0.001, 0.0025, steps.AtPractice}, {0.0025, 0.0025, steps.AtTarget}} {
+		bounded.LowestOutlet = 0.0025
+		o, err := steps.RunForerun(eq, feed, c.goal, still(0), bounded)
+		if err != nil {
+			t.Fatal(err)
+		}
+		near(t, "collected", o.Figure("water in what is drawn off")/100, c.holds, 1e-6)
+		if o.Why != c.why {
+			t.Errorf("to %g: stopped for %s: %s", c.goal, o.Why, o.WhyText)
+		}
+	}
+	// A lot drier than the bound is claimed to come out as it went in.
+	bounded.LowestOutlet = 0.05
+	if o, err := steps.RunForerun(eq, feed, 0, still(0), bounded); err != nil || math.Abs(o.Out.Water()/o.In.Water()-1) > 1e-9 || len(o.Warnings) == 0 {
+		t.Errorf("%v: %g from %g, warnings %q", err, o.Out.Water(), o.In.Water(), o.Warnings)
+	}
+}
+
+// Whichever way a charge dries, a tenth of its mass and of its moles is left in the
+// pot at least, and the share told is the one that stays.
+func TestHeelOfEveryForerun(t *testing.T) {
+	eqs := []*steps.ForerunEquilibrium{
+		boiler(t, mixture(t, "methanol"), atmospherePa), boiler(t, mixture(t, "acetone"), atmospherePa),
+		boiler(t, mixture(t, "tetrahydrofuran"), atmospherePa), boiler(t, ideal(0.3), atmospherePa), boiler(t, ideal(3), atmospherePa),
+	}
+	rapid.Check(t, func(rt *rapid.T) {
+		eq := eqs[rapid.IntRange(0, len(eqs)-1).Draw(rt, "mixture")]
+		water := math.Exp(rapid.Float64Range(math.Log(1e-4), math.Log(0.5)).Draw(rt, "ln w"))
+		goal := water * rapid.SampledFrom([]float64{0, 0.001, 0.01, 0.1, 0.3, 0.6, 0.9}).Draw(rt, "goal")
+		feed := steps.Lot{SolventKg: 10 * (1 - water), WaterKg: 10 * water}
+		o, err := steps.RunForerun(eq, feed, goal, still(rapid.IntRange(0, 15).Draw(rt, "stages")), drawingRules)
+		if errors.Is(err, steps.ErrNoForerun) {
+			return
+		}
+		if err != nil {
+			rt.Fatal(err)
+		}
+		pot, drawn := o.Out, o.Out
+		if o.Overhead {
+			pot = steps.Lot{SolventKg: feed.SolventKg - drawn.SolventKg, WaterKg: feed.WaterKg - drawn.WaterKg}
+		}
+		mol := func(l steps.Lot) float64 {
+			return l.SolventKg/eq.Mixture.Solvent.MolarMassKgPerMol + l.WaterKg/eq.Mixture.Water.MolarMassKgPerMol
+		}
+		ofMass, ofMoles := pot.MassKg()/feed.MassKg(), mol(pot)/mol(feed)
+		if ofMass < steps.LeastHeel*(1-1e-6) || ofMoles < steps.LeastHeel*(1-1e-6) {
+			rt.Fatalf("%s: %.5g of the mass, %.5g of the moles stay in the pot", o.Why, ofMass, ofMoles)
+		}
+		if o.Why == steps.AtHeel && math.Min(ofMass, ofMoles) > steps.LeastHeel*(1+1e-6) {
+			rt.Fatalf("heel: %.5g of the mass, %.5g of the moles stay in the pot", ofMass, ofMoles)
+		}
+		if said := 1 - o.Figure("drawn off, as a share of the charge")/100; math.Abs(said-ofMass) > 1e-6 {
+			rt.Fatalf("%.5g of the mass is told, %.5g stays", said, ofMass)
+		}
+		if o.Why == steps.AtTarget && math.Abs(o.Out.Water()/goal-1) > 1e-6 {
+			rt.Fatalf("%g for a target of %g", o.Out.Water(), goal)
+		}
+		if o.Out.Water() > feed.Water()*(1+1e-9) {
+			rt.Fatalf("from %g to %g", feed.Water(), o.Out.Water())
+		}
+	})
 }
 
 // A simple still takes about three quarters of tetrahydrofuran on the way from

@@ -36,18 +36,17 @@ const (
 	longestStep   = 1.0
 	shortestStep  = 1e-9
 	mostSteps     = 4000
-	wettestLogit  = 20.0 // a pot of water
+	wettestLogit  = 6.9 // a pot of water: a thousandth of its moles is solvent
 	eventAccuracy = 1e-9
 )
 
 // defaultDrawingError is the error of ln N allowed in each step.
 const defaultDrawingError = 1e-7
 
-// march follows d ln N/d logit = slope towards the logit end, until ln N has
-// fallen to lnHeel or beyond reports (by a value of 0) that its goal is reached.
-// Simpson's rule over a step and over its halves; the difference governs the step.
-func (d *drawing) march(end, lnHeel float64, beyond func() float64) error {
-	over := func() float64 { return math.Max(lnHeel-d.lnLeft, beyond()) }
+// march follows d ln N/d logit = slope towards the logit end, until over reports
+// (by a value of 0) that something else ends it. Simpson's rule over a step and over
+// its halves; the difference governs the step.
+func (d *drawing) march(end float64, over func() float64) error {
 	step := math.Copysign(firstStep, end-d.at.logit)
 	d.note()
 	for range mostSteps {
@@ -113,16 +112,15 @@ func (d *drawing) advance(step float64) (off float64, err error) {
 // strip draws water off until the pot holds goal.
 func (d *drawing) strip(goal float64) error {
 	d.why = AtTarget
-	if goal == d.rules.LowestOutlet {
-		d.why = AtPractice
+	if goal < d.rules.LowestOutlet {
+		d.goal, d.why = d.rules.LowestOutlet, AtPractice
 	}
-	end := logit(d.m.MoleFraction(goal))
+	end := logit(d.m.MoleFraction(d.goal))
 	if end >= d.at.logit {
 		d.note()
 		return nil
 	}
-	never := func() float64 { return math.Inf(-1) }
-	if err := d.march(end, math.Log(d.rules.HeelShare), never); err != nil {
+	if err := d.march(end, d.lnOverHeel); err != nil {
 		return err
 	}
 	if d.at.logit > end+eventAccuracy {
@@ -131,30 +129,52 @@ func (d *drawing) strip(goal float64) error {
 	return nil
 }
 
-// collect draws the product off until all that is collected holds goal, or the
-// heel is reached.
+// collect draws the product off until all that is collected holds goal, the heel is
+// reached or the pot is water. Without a goal (0) it goes on to one of the latter.
 func (d *drawing) collect(goal float64) error {
-	lnHeel := math.Log(d.rules.HeelShare)
+	reached := AtTarget
+	if goal > 0 && goal < d.rules.LowestOutlet {
+		d.goal, reached = d.rules.LowestOutlet, AtPractice
+	}
 	first := d.m.MassFraction(d.firstY)
 	tooWet := func() float64 {
 		water := d.drawn().water()
-		if first > goal || d.lnLeft > -1e-6 || !(water > 0) { // nothing drawn yet, or too dry to tell from none
+		if d.goal == 0 || first > d.goal || d.lnLeft > -1e-6 || !(water > 0) { // nothing drawn yet, or too dry to tell from none
 			return math.Inf(-1)
 		}
-		return math.Log(water / goal)
+		return math.Log(water / d.goal)
 	}
-	if err := d.march(wettestLogit, lnHeel, tooWet); err != nil {
+	if err := d.march(wettestLogit, func() float64 { return math.Max(d.lnOverHeel(), tooWet()) }); err != nil {
 		return err
 	}
 	switch {
-	case first > goal:
+	case d.goal > 0 && first > d.goal:
 		d.why = AtFloor
-	case d.lnLeft <= lnHeel+10*eventAccuracy:
+	case tooWet() >= -10*eventAccuracy:
+		d.why = reached
+	case d.lnOverHeel() >= -10*eventAccuracy:
 		d.why = AtHeel
 	default:
-		d.why = AtTarget
+		d.why = AtWater
 	}
 	return nil
+}
+
+// lnOverHeel is 0 where no more may leave the pot and below that before: the heel is
+// a share of the charge's mass and of its moles, whichever is met first. A pot that
+// dries grows heavier by the mole, so that its moles rule; a wet heel grows lighter.
+func (d *drawing) lnOverHeel() float64 {
+	return math.Log(d.rules.HeelShare / math.Min(math.Exp(d.lnLeft), d.leftOfMass()))
+}
+
+// leftOfMass is the share of the charge's mass that is in the pot.
+func (d *drawing) leftOfMass() float64 {
+	return math.Exp(d.lnLeft) * d.molarMass(d.at.x) / d.molarMass(d.x0)
+}
+
+// molarMass is kg per mole of a pot of water fraction x.
+func (d *drawing) molarMass(x float64) float64 {
+	return x*d.m.Water.MolarMassKgPerMol + (1-x)*d.m.Solvent.MolarMassKgPerMol
 }
 
 // drawnOff is the distillate of one charge so far, kg.
@@ -163,6 +183,9 @@ type drawnOff struct{ waterKg, solventKg float64 }
 func (o drawnOff) water() float64 { return o.waterKg / (o.waterKg + o.solventKg) }
 
 func (d *drawing) drawn() drawnOff {
+	if d.lnLeft == 0 {
+		return drawnOff{}
+	}
 	left := d.mol0 * math.Exp(d.lnLeft)
 	water := math.Max(0, d.mol0*d.x0-left*d.at.x)
 	solvent := math.Max(0, d.mol0-left-water)

@@ -25,6 +25,7 @@ type TrapRules struct {
 	CoolingFlowM3S   float64 // flow that is really run
 	CoolingRiseK     float64
 	LongestHeatUpS   float64 // 0: no limit
+	Closely          bool    // the course has more points
 }
 
 // TrapRig is the still and its receiver.
@@ -187,15 +188,17 @@ func (b *boiling) start(feed Lot) error {
 		return err
 	}
 	b.startK, b.potK = v.TempK, v.TempK
-	if b.startK <= b.rig.RoomK {
-		return fmt.Errorf("%w: %s boils at %.1f °C at %.4g kPa, not above the room's %.1f °C", ErrNoTrap, b.m.Solvent.Called(), b.startK-273.15, b.eq.PressurePa/1e3, b.rig.RoomK-273.15)
+	x := b.fraction()
+	if err := boilsInTheRoom(b.m.Solvent.Called()+" with its water", b.startK, b.rig.RoomK, b.eq.PressurePa, func(tK float64) float64 { return b.m.BubblePressure(x, tK) }); err != nil {
+		return fmt.Errorf("%w: %w", ErrNoTrap, err)
 	}
 	if err := b.checkCoolant(); err != nil {
 		return fmt.Errorf("%w: %w", ErrNoTrap, err)
 	}
 	mid := (b.startK + b.rig.RoomK) / 2
 	b.heatUpJ = (b.water*b.m.Water.HeatCapacityJPerMolK.At(mid) + b.solvent*b.m.Solvent.HeatCapacityJPerMolK.At(mid)) * (b.startK - b.rig.RoomK)
-	return checkHeater(b.heatUpJ, b.netW(), b.rules.LongestHeatUpS, (b.water+b.solvent)*b.m.MolarVolume(b.fraction(), b.rig.RoomK))
+	charge := hotCharge{b.heatUpJ, (b.water + b.solvent) * b.m.MolarVolume(x, b.rig.RoomK), b.startK - b.rig.RoomK}
+	return checkHeater(b.rig.HeaterW, b.rig.HeatShare, b.rules.LongestHeatUpS, charge)
 }
 
 // checkCoolant refuses a vapour that the condenser does not take. The lowest at
@@ -323,7 +326,10 @@ func (b *boiling) aqueousM3() float64 {
 
 // reflux runs the steady return down to the water fraction reach (kg/kg).
 func (b *boiling) reflux(reach float64) error {
-	end := b.m.MoleFraction(reach)
+	end, factor := b.m.MoleFraction(reach), math.E // of water between two points of the course
+	if b.rules.Closely {
+		factor = 1.2
+	}
 	if b.twoLiquids(b.fraction()) {
 		stop := math.Max(end, b.eq.Azeotrope.Layers.XOrganic)
 		if err := b.segment(stop); err != nil {
@@ -332,7 +338,7 @@ func (b *boiling) reflux(reach float64) error {
 	}
 	corner := b.m.MoleFraction(b.rules.EfficiencyBelow)
 	for b.fraction() > end*(1+1e-12) {
-		stop := math.Max(end, b.fraction()/math.E)
+		stop := math.Max(end, b.fraction()/factor)
 		if corner < b.fraction()*(1-1e-12) && corner > stop {
 			stop = corner
 		}

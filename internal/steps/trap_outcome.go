@@ -68,12 +68,23 @@ func (b *boiling) outcome(feed Lot, goal float64, why Stop) Outcome {
 		{holdsOfWater, "mL", b.rig.UsableVolumeM3 * 1e6},
 		{"floor of the pot", "mg/kg", b.eq.Floor.Water * mgPerKg},
 	}
-	if dry := floorMargin * b.eq.Floor.Water; feed.Water() <= dry {
-		o.WhyText = fmt.Sprintf("floor: the lot holds %s, and this trap takes no water out of less than %s", quantity.FormatWater(feed.Water()), quantity.FormatWater(dry))
-		o.Warnings = append(o.Warnings, "nothing is gained: the lot is as dry as this trap can make it")
-	}
+	b.nothingGained(&o)
 	o.Warnings = append(o.Warnings, oftenDrained(drainings, "let free water settle first, or take a larger receiver")...)
 	return o
+}
+
+// nothingGained says so of a lot that no trap makes drier.
+func (b *boiling) nothingGained(o *Outcome) {
+	holds, dry := "the lot holds "+quantity.FormatWater(o.In.Water()), floorMargin*b.eq.Floor.Water
+	switch {
+	case o.In.Water() <= dry:
+		o.Why, o.WhyText = AtFloor, fmt.Sprintf("floor: %s, and this trap takes no water out of less than %s", holds, quantity.FormatWater(dry))
+	case o.In.Water() <= b.rules.LowestOutlet:
+		o.Why, o.WhyText = AtPractice, fmt.Sprintf("practical limit: %s, and droplets and moist air keep a trap's outlet at %s or more", holds, quantity.FormatWater(b.rules.LowestOutlet))
+	default:
+		return
+	}
+	o.Warnings = append(o.Warnings, "nothing is gained: the lot is as dry as this trap can make it")
 }
 
 // mostDrainings of one charge before a larger receiver is worth a thought (common
@@ -126,6 +137,9 @@ func (b *boiling) reason(goal float64, why Stop) string {
 		return fmt.Sprintf("practical limit: droplets and moist air keep a trap's outlet at %s or more, whatever its floor of %s",
 			quantity.FormatWater(b.rules.LowestOutlet), quantity.FormatWater(b.eq.Floor.Water))
 	default:
+		if b.m.MassFraction(b.fraction()) < goal*(1-1e-3) {
+			return fmt.Sprintf("hand-over at %s passed while the receiver was filled from the pot", quantity.FormatWater(goal))
+		}
 		return fmt.Sprintf("hand-over at %s reached", quantity.FormatWater(goal))
 	}
 }

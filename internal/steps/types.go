@@ -33,6 +33,7 @@ const (
 	AtGrade    Stop = "grade as sold"
 	AtMeasured Stop = "measured residual"
 	AtHeel     Stop = "heel"                 // as much drawn off as may be
+	AtWater    Stop = "only water left"      // nothing else is in the pot
 	AtOneLayer Stop = "no second layer"      // the condensate no longer splits
 	AtExchange Stop = "layers change places" // the return no longer fits
 	AtCarrier  Stop = "carrier used up"      // none is left in the pot

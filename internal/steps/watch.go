@@ -3,15 +3,34 @@ package steps
 import "math"
 
 // Watch picks the points of a course that are worth reading at the bench: the
-// start, the end, and between them points about evenly spaced in the logarithm
-// of the water left, rows in all.
+// start, the end, and between them points about evenly spaced in the time and in the
+// logarithm of the water left, rows in all.
 func (o *Outcome) Watch(rows int) []Point {
-	c := o.Course
-	if len(c) <= rows || rows < 2 {
+	if len(o.Course) < 3 || rows < 2 {
+		return o.Course
+	}
+	start, end := o.Course[0], o.Course[len(o.Course)-1]
+	least := 1e-9
+	if out := o.Out.Water(); end.Water < out { // no less is claimed
+		least = out
+	}
+	lnWater := func(p Point) float64 { return math.Log(math.Max(p.Water, least)) }
+	c := distinct(o.Course, lnWater)
+	if len(c) <= rows {
 		return c
 	}
-	level := func(p Point) float64 { return math.Log(math.Max(p.Water, 1e-9)) }
-	first, last := level(c[0]), level(c[len(c)-1])
+	hours, falls := end.Hours-start.Hours, math.Abs(lnWater(end)-lnWater(start))
+	level := func(p Point) float64 { // 0 at the start, 1 at the end
+		byTime, byWater := (p.Hours-start.Hours)/hours, math.Abs(lnWater(p)-lnWater(start))/falls
+		switch {
+		case !(hours > 0):
+			return byWater
+		case !(falls > 0):
+			return byTime
+		}
+		return (byTime + byWater) / 2
+	}
+	first, last := 0.0, 1.0
 	picked := []Point{c[0]}
 	next := 1
 	for k := 1; k < rows-1; k++ {
@@ -26,6 +45,23 @@ func (o *Outcome) Watch(rows int) []Point {
 		next = best + 1
 	}
 	return append(picked, c[len(c)-1])
+}
+
+// distinct leaves out the points of a course that read like the one before or like the
+// last: where an end is closed in upon, steps grow short.
+func distinct(c []Point, lnWater func(Point) float64) []Point {
+	last := c[len(c)-1]
+	alike := func(a, b Point) bool {
+		const readably = 0.005
+		return math.Abs(a.Hours-b.Hours) < readably*last.Hours && math.Abs(lnWater(a)-lnWater(b)) < readably
+	}
+	kept := []Point{c[0]}
+	for _, p := range c[1 : len(c)-1] {
+		if !alike(p, kept[len(kept)-1]) && !alike(p, last) {
+			kept = append(kept, p)
+		}
+	}
+	return append(kept, last)
 }
 
 // holdsOfWater is the figure of what a receiver holds before it must be drained.

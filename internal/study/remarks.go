@@ -14,7 +14,9 @@ func Remarks(k *routes.Case, r routes.Route) (all []catalog.Caution, warnings []
 		agents = append(agents, s.Agent)
 	}
 	warnings = append(ownWarnings(k, agents), lotWarnings(k)...)
-	if anyStep(r, func(s routes.Stage) bool { return s.Kind == steps.Trap || s.Kind == steps.Reactive }) {
+	if anyStep(r, func(s routes.Stage) bool {
+		return s.Kind == steps.Trap || s.Kind == steps.Forerun || s.Kind == steps.Reactive
+	}) {
 		warnings = append(warnings, stillWarnings(k)...)
 	}
 	return cautions(k, r), warnings

@@ -48,7 +48,11 @@ func (m *Mixture) TrapFloor(receiverK, pressurePa float64) (Floor, error) {
 		return Floor{}, err
 	}
 	if receiverK >= wet.TempK {
-		return Floor{}, &WarmReceiver{m.Solvent.Called(), receiverK, wet.TempK, pressurePa}
+		boilsK := wet.TempK // of one liquid; two layers boil together at their azeotrope
+		if az, err := m.FindAzeotrope(pressurePa); err == nil && az.Kind == Heterogeneous {
+			boilsK = az.TempK
+		}
+		return Floor{}, &WarmReceiver{m.Solvent.Called(), receiverK, boilsK, pressurePa}
 	}
 	var failed error
 	guess := dryBoil
