@@ -54,7 +54,11 @@ func stepTitle(a *bench.Answer) string {
 		}
 		title += fmt.Sprintf(", %s, %s h", still, quantity.Significant(a.Course[len(a.Course)-1].Hours, 3))
 	}
-	return title + ", at " + temperature(q)
+	title += ", at " + temperature(q)
+	if usual := a.Case.Catalog.Practice["site-pressure"].SI; math.Abs(q.PressurePa-usual) > 1e-6*usual {
+		title += ", boiled at " + quantity.FormatPressure(q.PressurePa)
+	}
+	return title
 }
 
 // dose is the one that was asked for or found, else the agent by volume of the lot.

@@ -290,3 +290,31 @@ func TestTrapForATime(t *testing.T) {
 		t.Errorf("one second: %v", err)
 	}
 }
+
+// A course that is told more closely is the same course: what it ends with does not
+// move by more than 0.02 % (needs no outside value).
+func TestCloserCourse(t *testing.T) {
+	for _, solvent := range []string{"toluene", "ethyl-acetate", "1-butanol", "dichloromethane"} {
+		eq := equilibrium(t, solvent, 20)
+		feed := litres(eq.Mixture, 15, 3*eq.Floor.Water+500e-6)
+		goal := 1.2*eq.Floor.Water + 30e-6
+		returns := string(eq.Floor.Return)
+		plain, err := steps.RunTrap(eq, feed, goal, rig(returns), rules)
+		if err != nil {
+			t.Fatal(err)
+		}
+		closer := rules
+		closer.Closely = true
+		o, err := steps.RunTrap(eq, feed, goal, rig(returns), closer)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if len(o.Course) < len(plain.Course)+2 {
+			t.Errorf("%s: %d points, %d more closely", solvent, len(plain.Course), len(o.Course))
+		}
+		near(t, solvent+": water", o.Out.Water(), plain.Out.Water(), 1e-6)
+		near(t, solvent+": hours", o.HoursTotal, plain.HoursTotal, 2e-4)
+		near(t, solvent+": lost", o.SolventLostL, plain.SolventLostL, 2e-4)
+		near(t, solvent+": aqueous layer", o.Figure("aqueous layer, each charge"), plain.Figure("aqueous layer, each charge"), 1e-6)
+	}
+}
