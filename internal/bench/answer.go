@@ -120,7 +120,11 @@ func refuse(k *routes.Case, q *Question, stage routes.Stage) error {
 			Source: source, Confidence: h.Confidence,
 		}
 	}
-	return &Refusal{Reason: reason, Source: source}
+	refusal := &Refusal{Reason: reason, Source: source}
+	if q.Kind == steps.Trap && strings.Contains(reason, "no second layer") {
+		refusal.Hint = "water that does not settle is drawn off (parch step forerun) or boiled out with a carrier (--carrier)"
+	}
+	return refusal
 }
 
 // forbidden says why a pair of solvent and agent is refused.

@@ -190,8 +190,9 @@ func (p *page) advice(all []bench.Advice) {
 func (p *page) figures(o *steps.Outcome) {
 	var rows [][]string
 	for _, f := range o.Figures {
-		if text := quantity.Significant(f.Value, 3); text != quantity.Unknown {
-			rows = append(rows, []string{f.Name, text, f.Unit})
+		value, unit := smaller(f)
+		if text := quantity.Significant(value, 3); text != quantity.Unknown {
+			rows = append(rows, []string{f.Name, text, unit})
 		}
 	}
 	if len(rows) == 0 {
@@ -199,6 +200,14 @@ func (p *page) figures(o *steps.Outcome) {
 	}
 	p.heading("Figures:")
 	p.table([]column{{"Figure", false, 60}, {"Value", true, 0}, {"Unit", false, 0}}, rows)
+}
+
+// smaller is a figure in a smaller unit where it is far below its own.
+func smaller(f steps.Figure) (value float64, unit string) {
+	if unit, known := map[string]string{"L": "mL", "kg": "g"}[f.Unit]; known && f.Value > 0 && f.Value < 0.01 {
+		return 1e3 * f.Value, unit
+	}
+	return f.Value, f.Unit
 }
 
 // basis lists the numbers that the answer rests on, each with its grade.

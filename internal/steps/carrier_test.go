@@ -239,7 +239,7 @@ func TestCarrierBalances(t *testing.T) {
 		r.Charges = rapid.IntRange(1, 3).Draw(rt, "charges")
 		o, err := steps.RunCarrier(eq, feed, plan, r, rules)
 		switch {
-		case errors.Is(err, steps.ErrNoCarrier):
+		case errors.Is(err, steps.ErrNoCarrier), errors.Is(err, steps.ErrHeater): // 300 W do not keep 40 L at the boil
 			return
 		case err != nil:
 			rt.Fatal(err)
