@@ -64,6 +64,9 @@ func (c *Case) singleCarrier(a Asked, s *Single) error {
 		return err
 	}
 	rules := c.trapRules()
+	if a.TimeS < rules.ShortestRefluxS {
+		return fmt.Errorf("%w: %.3g h of reflux; a trap is run for %.3g h at least", steps.ErrNoCarrier, a.TimeS/3600, rules.ShortestRefluxS/3600)
+	}
 	if receiver.SetUp != nil {
 		rules.SetUpS += receiver.SetUp.SI
 	}
