@@ -102,15 +102,19 @@ func liftTarget(_ *job.Job, lot *job.Lot, k *routes.Case) (string, search.Object
 // driest is the objective of one who takes any target: as little water as can be.
 const driest search.Objective = "water"
 
-// bestOf tunes every route of a case and takes the best that reaches the limit.
+// alike is how far two contents may lie apart and still be told as the same.
+const alike = 1e-3
+
+// bestOf tunes every route of a case and takes the best that reaches the limit; by the
+// driest, the cheapest of those that leave as little as any.
 func bestOf(k *routes.Case, like *search.Tuner, by search.Objective) (*routes.Run, error) {
 	t := &search.Tuner{Case: k, Book: like.Book, Objective: by, Site: like.Site, Stop: like.Stop}
 	if by == driest {
 		t.Objective = search.Cost
 	}
 	offered, _ := k.Candidates()
-	var best *routes.Run
-	lowest := math.Inf(1)
+	var runs []routes.Run
+	least := math.Inf(1)
 	for _, r := range offered {
 		if r.CarrierOf() != "" { // each takes as long as all others together
 			continue
@@ -122,14 +126,22 @@ func bestOf(k *routes.Case, like *search.Tuner, by search.Objective) (*routes.Ru
 		if err != nil {
 			return nil, err
 		}
-		value := run.WaterOut
-		if by != driest {
-			if value, err = t.Value(&run); err != nil {
-				return nil, err
-			}
+		runs = append(runs, run)
+		least = min(least, run.WaterOut)
+	}
+	var best *routes.Run
+	lowest := math.Inf(1)
+	for i := range runs {
+		run := &runs[i]
+		if by == driest && run.WaterOut > least*(1+alike) || by != driest && !run.Meets {
+			continue
 		}
-		if (run.Meets || by == driest) && value < lowest {
-			best, lowest = &run, value
+		value, err := t.Value(run)
+		if err != nil {
+			return nil, err
+		}
+		if value < lowest {
+			best, lowest = run, value
 		}
 	}
 	return best, nil
