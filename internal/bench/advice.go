@@ -44,17 +44,13 @@ func (a *Answer) advise() {
 	a.adviseReaction()
 }
 
-// adviseHours tells the hours and the energy of the step from what is done
-// elsewhere for it: activating the beads, handing over what is spent.
+// adviseHours tells hours and energy, and what of them is spent elsewhere: on
+// activating the beads, on handing over what is spent.
 func (a *Answer) adviseHours() {
-	text := fmt.Sprintf("%s h in all, %s h of them attended", quantity.Significant(a.HoursTotal, 3), quantity.Significant(a.OwnHours, 3))
-	switch more := a.HoursAttended - a.OwnHours; {
-	case more <= 1e-9:
-	case a.Kind == steps.Reactive: // the hours in all have it
-		text = fmt.Sprintf("%s h in all, %s h of them attended: %s h at the still, %s h for %s", quantity.Significant(a.HoursTotal, 3), quantity.Significant(a.HoursAttended, 3),
-			quantity.Significant(a.OwnHours, 3), quantity.Significant(more, 3), a.elsewhere("technician"))
-	default:
-		text += fmt.Sprintf("; %s h of work more: %s", quantity.Significant(more, 3), a.elsewhere("technician"))
+	text := fmt.Sprintf("%s h in all, %s h attended", quantity.Significant(a.HoursTotal, 3), quantity.Significant(a.HoursAttended, 3))
+	if more := a.HoursAttended - a.OwnHours; more > 1e-9 {
+		besides := map[bool]string{false: " besides,"}[a.Kind == steps.Reactive] // whose hours in all have it
+		text += fmt.Sprintf(": %s h at the step and %s h%s for %s", quantity.Significant(a.OwnHours, 3), quantity.Significant(more, 3), besides, a.elsewhere("technician"))
 	}
 	a.tell("time", "%s", text)
 	if a.EnergyKWh > 0 || a.CoolingWaterL > 0 {

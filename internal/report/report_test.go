@@ -72,6 +72,10 @@ const (
 		"cost_per_litre_low cost_per_litre_high cost_by_head settings steps cautions warnings"
 	stepKeys = "kind agent carrier water_in_mg_per_kg water_out_mg_per_kg floor_mg_per_kg why_it_stops hours_total hours_attended " +
 		"energy_kwh agent_kg solvent_lost_l"
+	// of a step that was asked for by itself, after those
+	aloneKeys = " water_out_low_mg_per_kg water_out_high_mg_per_kg band_of water_in_mg_per_l water_in_mmol_per_l water_out_mg_per_l " +
+		"water_out_mmol_per_l volume_l temperature_c why turns_on missed hours_attended_at_step hours_attended_elsewhere sizes advice course " +
+		"figures read_as warnings rests_on cautions sources"
 	cautionKeys  = "code level text"
 	excludedKeys = "id reason source"
 	purchaseKeys = "item need_kg_per_year later_years_kg_per_year packs total"

@@ -14,11 +14,6 @@ import (
 	"parch/internal/steps"
 )
 
-// StepJSON writes what one step does, as an element of the steps of a comparison.
-func StepJSON(w io.Writer, a *bench.Answer) error {
-	return writeJSON(w, showStep(&a.Outcome))
-}
-
 // StepText prints what one step does for a terminal. It ends with cautions and
 // sources.
 func StepText(w io.Writer, a *bench.Answer) error {
@@ -234,11 +229,16 @@ func ownData(o catalog.Origin) string {
 
 func (p *page) stepCautions(all []catalog.Caution) {
 	p.heading("Cautions:")
+	for _, c := range byLevel(all) {
+		p.say(5, 4, "%s, %s: %s [%s, %s]", c.Level, c.Code, c.Text, c.Source, c.Confidence)
+	}
+}
+
+// byLevel are cautions with the gravest first.
+func byLevel(all []catalog.Caution) []catalog.Caution {
 	sorted := slices.Clone(all)
 	slices.SortStableFunc(sorted, func(a, b catalog.Caution) int {
 		return slices.Index(levels, a.Level) - slices.Index(levels, b.Level)
 	})
-	for _, c := range sorted {
-		p.say(5, 4, "%s, %s: %s [%s, %s]", c.Level, c.Code, c.Text, c.Source, c.Confidence)
-	}
+	return sorted
 }

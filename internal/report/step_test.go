@@ -2,9 +2,11 @@ package report_test
 
 import (
 	"bytes"
+	"encoding/json"
 	"errors"
 	"fmt"
 	"maps"
+	"math"
 	"slices"
 	"strings"
 	"testing"
@@ -14,6 +16,7 @@ import (
 
 	"parch/catalog"
 	"parch/internal/bench"
+	"parch/internal/quantity"
 	"parch/internal/report"
 )
 
@@ -97,7 +100,88 @@ func checkStep(t *testing.T, name string, a *bench.Answer) {
 	if cautions < 0 || sources < cautions {
 		t.Errorf("%s: cautions at %d, sources at %d", name, cautions, sources)
 	}
-	if diff := cmp.Diff(strings.Fields(stepKeys), strings.Fields(keysOf(t, doc.Bytes()))); diff != "" {
+	if diff := cmp.Diff(strings.Fields(stepKeys+aloneKeys), strings.Fields(keysOf(t, doc.Bytes()))); diff != "" {
 		t.Errorf("%s (-want +got):\n%s", name, diff)
+	}
+	checkAgreement(t, name, text.String(), doc.Bytes())
+}
+
+// aloneStep are the keys of a step's JSON that are held to its text.
+type aloneStep struct {
+	Out      float64  `json:"water_out_mg_per_kg"`
+	Low      *float64 `json:"water_out_low_mg_per_kg"`
+	High     *float64 `json:"water_out_high_mg_per_kg"`
+	BandOf   []string `json:"band_of"`
+	Total    float64  `json:"hours_total"`
+	Attended float64  `json:"hours_attended"`
+	Own      float64  `json:"hours_attended_at_step"`
+	More     float64  `json:"hours_attended_elsewhere"`
+	Course   []struct {
+		Hours float64 `json:"hours"`
+	} `json:"course"`
+	ReadAs   []string `json:"read_as"`
+	Warnings []string `json:"warnings"`
+	Advice   []struct {
+		Topic, Text string
+	} `json:"advice"`
+	RestsOn []struct {
+		What, Source, Confidence string
+	} `json:"rests_on"`
+	Cautions []struct {
+		Code, Text, Source, Confidence string
+	} `json:"cautions"`
+	Sources []struct {
+		ID, Reference string
+	} `json:"sources"`
+}
+
+// what the text says stands in the JSON too: the band about the outlet, the hours, what
+// is weak, the warnings, the cautions and where all of it comes from.
+func checkAgreement(t *testing.T, name, text string, doc []byte) {
+	t.Helper()
+	var step aloneStep
+	if err := json.Unmarshal(doc, &step); err != nil {
+		t.Fatalf("%s: %v", name, err)
+	}
+	plain := strings.Join(strings.Fields(text), " ")
+	says := func(what string) {
+		if what = strings.Join(strings.Fields(what), " "); !strings.Contains(plain, what) {
+			t.Errorf("%s: the text does not say %q", name, what)
+		}
+	}
+	if step.Low != nil && (*step.Low > step.Out*(1+1e-9) || *step.High < step.Out*(1-1e-9) || len(step.BandOf) == 0) {
+		t.Errorf("%s: %g mg/kg lies outside %g to %g, from %q", name, step.Out, *step.Low, *step.High, step.BandOf)
+	}
+	says(fmt.Sprintf("time %s h in all, %s h attended", quantity.Significant(step.Total, 3), quantity.Significant(step.Attended, 3)))
+	if math.Abs(step.Own+step.More-step.Attended) > 1e-9 {
+		t.Errorf("%s: %g + %g h are not %g h", name, step.Own, step.More, step.Attended)
+	}
+	if n := len(step.Course); n > 0 && step.Course[n-1].Hours > step.Total*(1+1e-9) {
+		t.Errorf("%s: the course takes %g of %g h", name, step.Course[n-1].Hours, step.Total)
+	}
+	for _, list := range [][]string{step.ReadAs, step.Warnings, step.BandOf} {
+		for _, one := range list {
+			says(one)
+		}
+	}
+	for _, a := range step.Advice {
+		says(a.Text)
+	}
+	cited := map[string]bool{}
+	for _, s := range step.Sources {
+		says(s.ID + ": " + s.Reference)
+		cited[s.ID] = true
+	}
+	for _, b := range step.RestsOn {
+		says(b.What)
+		if b.Confidence == "" || !cited[b.Source] {
+			t.Errorf("%s: %s rests on %q, %q, which is not among the sources", name, b.What, b.Source, b.Confidence)
+		}
+	}
+	for _, c := range step.Cautions {
+		says(c.Code + ": " + c.Text)
+	}
+	if len(step.RestsOn) == 0 || len(step.Cautions) == 0 || len(step.Sources) == 0 {
+		t.Errorf("%s: without what it rests on, without cautions or without sources", name)
 	}
 }

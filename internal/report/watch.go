@@ -35,7 +35,7 @@ func (p *page) watch(a *bench.Answer) {
 		if a.Kind == steps.Forerun {
 			collected = pt.DrawnM3
 		}
-		row := []string{quantity.Significant(pt.Hours, 3), kelvins(pt.PotK), kelvins(pt.HeadK), drawn(collected), p.watched(a, pt.Water)}
+		row := []string{quantity.Significant(pt.Hours, 3), kelvins(pt.PotK), kelvins(pt.HeadK), drawn(collected), watchedWater(a, pt.Water)}
 		if a.Carrier != "" {
 			row = append(row, quantity.Significant(100*pt.Carrier, 3), drawn(pt.DrawnM3))
 		}
@@ -55,17 +55,27 @@ func drawn(m3 float64) string {
 	return quantity.Significant(m3*1e6, 3)
 }
 
-// watched is the water of a pot or of what has come over, no drier than is claimed in
+// watchedWater is the water of a pot or of what has come over, no drier than is claimed in
 // the end: of a trap the outlet, of a forerun the least that is claimed of any.
-func (p *page) watched(a *bench.Answer, water float64) string {
-	claimed := a.Out.Water()
+func watchedWater(a *bench.Answer, water float64) string {
+	claimed, orLess := claimedOf(a, water)
+	if orLess {
+		return "< " + mgKg(claimed)
+	}
+	return traceOf(water)
+}
+
+// claimedOf is a water content on the way, or the least that is claimed where it is
+// computed to be less.
+func claimedOf(a *bench.Answer, water float64) (claimed float64, orLess bool) {
+	claimed = a.Out.Water()
 	if a.Kind == steps.Forerun {
 		claimed = math.Min(claimed, a.Case.Catalog.Practice["trap-outlet-minimum"].SI)
 	}
 	if water < claimed*(1-1e-6) {
-		return "< " + mgKg(claimed)
+		return claimed, true
 	}
-	return traceOf(water)
+	return water, false
 }
 
 // traceOf is a water content; where a carrier is stripped it falls to nothing.
