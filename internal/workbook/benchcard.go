@@ -37,7 +37,7 @@ const (
 )
 
 func (l *layout) benchCard() *grid {
-	widths := []float64{20, 40, 8, 10, 9, 9, 8, 12, 14, 10, 10, 10}
+	widths := []float64{18, 34, 8, 10, 9, 9, 8, 12, 14, 10, 10, 10}
 	for range cardFigures * mostOnCard {
 		widths = append(widths, 14)
 	}

@@ -30,11 +30,19 @@ func (b *book) onLetter(t *testing.T) []byte {
 var footer = regexp.MustCompile(`(?m)^ *(\S.*?) {2,}Page \d+ of \d+ *$`)
 
 // pagesBySheet prints workbooks with an independent program and counts the pages of
-// each sheet by the name in the footer.
-func pagesBySheet(t *testing.T, files ...[]byte) []map[string]int {
+// each sheet by the name in the footer. Where typefaces are named, no other is there to
+// stand in for the workbook's own.
+func pagesBySheet(t *testing.T, only []string, files ...[]byte) []map[string]int {
 	t.Helper()
 	soffice, pdftotext := outside.Program(t, "soffice"), outside.Program(t, "pdftotext")
 	dir := t.TempDir()
+	office := func(args []string) *exec.Cmd {
+		cmd := exec.CommandContext(t.Context(), soffice, args...)
+		if len(only) > 0 {
+			cmd.Env = append(os.Environ(), "FONTCONFIG_FILE="+fontsOnly(t, only))
+		}
+		return cmd
+	}
 	args := []string{"-env:UserInstallation=file://" + filepath.ToSlash(filepath.Join(dir, "profile")), "--headless", "--convert-to", "pdf", "--outdir", dir}
 	for i, data := range files {
 		name := filepath.Join(dir, fmt.Sprintf("book%d.xlsx", i))
@@ -43,7 +51,7 @@ func pagesBySheet(t *testing.T, files ...[]byte) []map[string]int {
 		}
 		args = append(args, name)
 	}
-	if text, err := exec.CommandContext(t.Context(), soffice, args...).CombinedOutput(); err != nil {
+	if text, err := office(args).CombinedOutput(); err != nil {
 		t.Fatalf("soffice: %v\n%s", err, text)
 	}
 	all := make([]map[string]int, len(files))
@@ -62,6 +70,40 @@ func pagesBySheet(t *testing.T, files ...[]byte) []map[string]int {
 	return all
 }
 
+// typefaces are the files of the families of typefaces that this system has.
+func typefaces(t *testing.T) map[string][]string {
+	t.Helper()
+	list := outside.Program(t, "fc-list")
+	out, err := exec.CommandContext(t.Context(), list, "--format", "%{family[0]}\t%{file}\n").Output()
+	if err != nil {
+		t.Fatal(err)
+	}
+	families := map[string][]string{}
+	for _, line := range strings.Split(strings.TrimSpace(string(out)), "\n") {
+		if family, file, ok := strings.Cut(line, "\t"); ok {
+			families[family] = append(families[family], file)
+		}
+	}
+	return families
+}
+
+// fontsOnly is a configuration of a system that has these files of typefaces alone.
+func fontsOnly(t *testing.T, files []string) string {
+	t.Helper()
+	dir := t.TempDir()
+	for i, file := range files {
+		if err := os.Symlink(file, filepath.Join(dir, fmt.Sprintf("%d-%s", i, filepath.Base(file)))); err != nil {
+			t.Fatal(err)
+		}
+	}
+	name := filepath.Join(dir, "fonts.conf")
+	text := `<?xml version="1.0"?><!DOCTYPE fontconfig SYSTEM "urn:fontconfig:fonts.dtd"><fontconfig><dir>` + dir + "</dir><cachedir>" + t.TempDir() + "</cachedir></fontconfig>"
+	if err := os.WriteFile(name, []byte(text), 0o644); err != nil {
+		t.Fatal(err)
+	}
+	return name
+}
+
 // Decision prints on one page and Bench card on one for each lot, on both usual
 // sizes of paper, for few lots and for many.
 func TestPagesToSignAndForTheBench(t *testing.T) {
@@ -70,10 +112,46 @@ func TestPagesToSignAndForTheBench(t *testing.T) {
 	}
 	small := readBook(t, written(t, demo(t)))
 	crowd := readBook(t, written(t, many(30, 3)))
-	for i, pages := range pagesBySheet(t, written(t, demo(t)), small.onLetter(t), written(t, synthetic()), crowd.onLetter(t)) {
-		want := []int{3, 3, 2, 30}[i]
-		if pages[sheetDecision] != 1 || pages[sheetBenchCard] != want {
-			t.Errorf("book %d: Decision on %d pages, Bench card on %d, want 1 and %d", i, pages[sheetDecision], pages[sheetBenchCard], want)
+	books := [][]byte{written(t, demo(t)), small.onLetter(t), written(t, synthetic()), crowd.onLetter(t)}
+	for i, pages := range pagesBySheet(t, nil, books...) {
+		checkPages(t, i, pages, []int{3, 3, 2, 30}[i])
+	}
+}
+
+func checkPages(t *testing.T, book int, pages map[string]int, cards int) {
+	t.Helper()
+	if pages[sheetDecision] != 1 || pages[sheetBenchCard] != cards {
+		t.Errorf("book %d: Decision on %d pages, Bench card on %d, want 1 and %d", book, pages[sheetDecision], pages[sheetBenchCard], cards)
+	}
+}
+
+// standIns are typefaces that systems without the workbook's own print it in, narrow
+// ones and wide ones.
+var standIns = []string{"Carlito", "Liberation Sans", "Liberation Sans Narrow", "DejaVu Sans", "DejaVu Sans Mono", "DejaVu Serif",
+	"Noto Sans", "Open Sans", "FreeSans"}
+
+// The pages do not depend on the typeface that stands in: with each one that the
+// system has, as if it had no other.
+func TestPagesInAnyTypeface(t *testing.T) {
+	if testing.Short() {
+		t.Skip("prints workbooks")
+	}
+	small := readBook(t, written(t, demo(t)))
+	books := [][]byte{written(t, demo(t)), small.onLetter(t)}
+	tried := 0
+	families := typefaces(t)
+	for _, family := range standIns {
+		if len(families[family]) == 0 {
+			continue
 		}
+		tried++
+		t.Run(family, func(t *testing.T) {
+			for i, pages := range pagesBySheet(t, families[family], books...) {
+				checkPages(t, i, pages, 3)
+			}
+		})
+	}
+	if tried == 0 {
+		t.Skip("none of the typefaces is installed")
 	}
 }
