@@ -78,6 +78,7 @@ func takesValue(cmd *cli.Command, name string) bool {
 var (
 	notDefined = regexp.MustCompile(`^flag provided but not defined: -(.*)$`)
 	badSwitch  = regexp.MustCompile(`^invalid boolean value "(.*)" for -([^:]*)`)
+	badNumber  = regexp.MustCompile(`^invalid value "(.*)" for flag -([^:]*): (.*)$`)
 )
 
 // flagFailure puts an error of the flag library into our words.
@@ -92,6 +93,13 @@ func flagFailure(err error, flags []cli.Flag) error {
 	}
 	if m := badSwitch.FindStringSubmatch(text); m != nil {
 		return misused(fmt.Sprintf("--%s takes no value, but %q was given", m[2], m[1]), "")
+	}
+	if m := badNumber.FindStringSubmatch(text); m != nil {
+		what := "is not a whole number in digits, as 2000"
+		if strings.HasSuffix(m[3], "out of range") {
+			what = "is too large"
+		}
+		return misused(fmt.Sprintf("--%s: %q %s", m[2], m[1], what), "")
 	}
 	return misused(text, "")
 }
