@@ -70,18 +70,22 @@ func waterAfter(m *thermo.Mixture, feed Lot, charges []Charge, sorbent Sorbent, 
 	return left.Water()
 }
 
+// mostHeld is the largest share of a lot that a series is let keep on its charges.
+const mostHeld = 0.95
+
 // SeriesFor stands a lot over n equal charges, each for timeS, of the least dose
 // that reaches goal (kg/kg) with the last of them; or over n of the largest
-// practical doses where none does. Each charge is at least the least usual dose.
+// practical doses where none does, less if those would keep the lot. Each charge is at least the least usual dose.
 func SeriesFor(m *thermo.Mixture, feed Lot, goal, timeS float64, n int, sorbent Sorbent, rig SoakRig) (Outcome, error) {
 	if n <= 1 {
 		return SoakFor(m, feed, goal, timeS, sorbent, rig)
 	}
-	most := float64(n) * sorbent.MaxDoseKgPerM3
 	if err := errors.Join(checkDose(sorbent.MaxDoseKgPerM3), checkTime(timeS), checkAmount("a goal", "mg/kg", goal*mgPerKg, 0, mgPerKg)); err != nil {
 		return Outcome{}, err
 	}
 	volumeM3 := LotVolume(m, feed, rig.TempK)
+	drunkUp := (feed.SolventKg + feed.CarrierKg) / m.Solvent.DensityKgPerM3.At(rig.TempK) / sorbent.HoldUpM3PerKg / volumeM3
+	most := math.Min(float64(n)*sorbent.MaxDoseKgPerM3, mostHeld*orOne(float64(rig.Lots))*drunkUp)
 	charges := func(doseKgPerM3 float64) []Charge { return EqualCharges(n, doseKgPerM3*volumeM3, timeS) }
 	over := func(doseKgPerM3 float64) (Outcome, error) {
 		return SoakSeries(m, feed, charges(doseKgPerM3), sorbent, rig)
@@ -91,7 +95,7 @@ func SeriesFor(m *thermo.Mixture, feed Lot, goal, timeS float64, n int, sorbent 
 	if err == nil && o.Out.Water() <= goal {
 		return reachedBySeries(o, n), nil
 	}
-	if o, err = over(most); err != nil || o.Out.Water() > goal {
+	if o, err = over(math.Max(most, dose)); err != nil || o.Out.Water() > goal {
 		return missedBySeries(o, goal, n), err
 	}
 	lnDose, err := thermo.Brent(func(lnDose float64) float64 {

@@ -38,6 +38,19 @@ func TestSeriesSolved(t *testing.T) {
 	}
 }
 
+// Cakes of powder that would drink up a lot are not charged: what is missed is told of
+// as much as leaves a twentieth.
+func TestSeriesLeavesSomeOfTheLot(t *testing.T) {
+	m := mixture(t, "toluene")
+	powder := sieve3A(t, 0.02)
+	powder.HoldUpM3PerKg = 2e-3 // two charges of 300 kg/m3 hold more than all
+	o, err := steps.SeriesFor(m, litres(m, 1, 400e-6), 1e-9, day(1), 2, powder, bottle(t, "toluene", 0.08))
+	if err != nil || o.Why == steps.AtTarget {
+		t.Fatalf("%q, %v", o.WhyText, err)
+	}
+	near(t, "left of the lot", o.Out.SolventKg/o.In.SolventKg, 0.05, 1e-3)
+}
+
 // A stirred powder is as fast as it is kept suspended, where beads stirred the same
 // way are slower than that; one that settles is no faster than beads.
 func TestPowder(t *testing.T) {
