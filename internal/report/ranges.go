@@ -46,8 +46,8 @@ func chanceOf(chance float64) string {
 	switch {
 	case chance >= 0.99:
 		return "over 99 %"
-	case chance <= 0.01:
-		return "under 1 %"
+	case chance == 0: // told to a tenth where the draws are few
+		return "under 10 %"
 	}
 	return "at least " + quantity.FormatShare(chance)
 }

@@ -17,6 +17,8 @@ const (
 func Told(values []float64) Band {
 	b, usual := BandOf(values), BandOf(values[:min(len(values), UsualDraws)])
 	b.Low, b.Median, b.High = told(b.Low, usual.LowError), told(b.Median, usual.MedianError), told(b.High, usual.HighError)
+	b.Median = math.Max(b.Median, b.Low) // where they are told to steps so coarse that they change places
+	b.High = math.Max(b.High, b.Median)
 	return b
 }
 
@@ -27,20 +29,26 @@ func told(x, err float64) float64 {
 	if math.IsNaN(err) || math.IsInf(err, 0) { // next to draws that fail
 		err = 0
 	}
-	power := math.Floor(math.Log10(math.Abs(x))) - 1
-	for {
+	for power := math.Floor(math.Log10(math.Abs(x))) - 1; ; power++ {
 		for _, s := range []float64{1, 2, 5} {
-			unit := math.Pow(10, math.Abs(power)) // exact, so that 0.3 comes out as such
-			if step := s * math.Pow(10, power); step >= errorsAStep*err {
-				n := math.Round(x/step) * s
-				if power < 0 {
-					return n / unit
-				}
-				return n * unit
+			if rounded := toStep(x, s, power); s*math.Pow(10, power) >= errorsAStep*err && rounded != 0 {
+				return rounded
 			}
 		}
-		power++
+		if toStep(x, 1, power+1) == 0 { // the draws do not bear a digit: one is told all the same, never nothing
+			return toStep(x, 5, power-1)
+		}
 	}
+}
+
+// toStep rounds x to a step of s times a power of ten.
+func toStep(x, s, power float64) float64 {
+	unit := math.Pow(10, math.Abs(power)) // exact, so that 0.3 comes out as such
+	n := math.Round(x/(s*math.Pow(10, power))) * s
+	if power < 0 {
+		return n / unit
+	}
+	return n * unit
 }
 
 // shareStep is how finely a share p of the draws is told.

@@ -4,6 +4,8 @@ import (
 	"math"
 	"testing"
 
+	"pgregory.net/rapid"
+
 	"parch/internal/spread"
 )
 
@@ -87,4 +89,29 @@ func TestChancesAreToldAsReachedAtLeast(t *testing.T) {
 	if got := spread.ToldShare(0.58, spread.UsualDraws); got != 0.6 {
 		t.Errorf("a share of 0.58 is told as %g", got)
 	}
+}
+
+// What is positive in every draw is never told as nothing, however few draws there are
+// and however far they spread: not a water content, not a cost.
+func TestWhatIsPositiveIsNotToldAsNothing(t *testing.T) {
+	rapid.Check(t, func(t *rapid.T) {
+		n := rapid.IntRange(1, 600).Draw(t, "draws")
+		band := rapid.Float64Range(1.01, 1e4).Draw(t, "band")
+		scale := math.Pow(10, rapid.Float64Range(-9, 6).Draw(t, "scale"))
+		d, err := spread.Draw([]spread.Input{spread.Factor("f", band, "test")}, n, rapid.Uint64().Draw(t, "seed"))
+		if err != nil {
+			t.Fatal(err)
+		}
+		values := make([]float64, n)
+		for i, v := range d.Column(0) {
+			values[i] = scale * v
+		}
+		exact, told := spread.BandOf(values), spread.Told(values)
+		if !(told.Low > 0 && told.Low <= told.Median && told.Median <= told.High) {
+			t.Fatalf("%d draws of %g to %g: told as %g, %g and %g", n, exact.Low, exact.High, told.Low, told.Median, told.High)
+		}
+		if told.High > 2*exact.High || told.High < exact.High/2 {
+			t.Fatalf("%g is told as %g", exact.High, told.High)
+		}
+	})
 }
