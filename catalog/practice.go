@@ -41,6 +41,7 @@ var practiceKeys = map[string]quantity.Dimension{
 	"flush-attended":        quantity.Share,
 	"dose-minimum":          quantity.MassConcentration,
 	"dose-maximum":          quantity.MassConcentration,
+	"oxide-history":         quantity.Number,
 	"powder-diameter":       quantity.Length,
 	"powder-hold-up":        quantity.HoldUp,
 	"stir-velocity":         quantity.Velocity,

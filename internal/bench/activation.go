@@ -10,6 +10,7 @@ import (
 	"parch/internal/assay"
 	"parch/internal/job"
 	"parch/internal/quantity"
+	"parch/internal/routes"
 	"parch/internal/steps"
 )
 
@@ -22,6 +23,7 @@ type Activation struct {
 	Low, High float64 // NaN where no band is known
 	Note      string  // how it came about where the catalog does not have it
 	Origin    catalog.Origin
+	Stated    bool // by the owner of the sorbent
 	Borrowed  bool // found on zeolites, and the agent is none
 }
 
@@ -58,19 +60,17 @@ func (r *reader) activated() {
 	}
 	r.history(text)
 	if r.q.Agent.Kind != "sieve" {
-		r.q.Activation.borrow()
+		r.q.Activation.borrow(r.cat.Practice[routes.OxideHistory])
 	}
 }
 
-// What a sorbent that is no zeolite may hold, by what a zeolite with its history does:
-// nearly nothing to well above it (assumption).
-const borrowedLow, borrowedHigh = 0.1, 3
-
-func (a *Activation) borrow() {
+// borrow takes over what a zeolite with the history holds, within a band (kg/kg by
+// kg/kg).
+func (a *Activation) borrow(share catalog.Value) {
 	a.Borrowed = true
 	a.Text += ", as for a zeolite"
-	a.Low, a.High = borrowedLow*a.KgPerKg, borrowedHigh*a.KgPerKg
-	a.Origin = catalog.Origin{Source: "assumption", Confidence: catalog.Assumption, Note: "the figure is for zeolites"}
+	a.Low, a.High = share.Low*a.KgPerKg, share.High*a.KgPerKg
+	a.Origin = catalog.Origin{Source: share.Source, Confidence: share.Confidence, Note: "the figure is for zeolites"}
 }
 
 func (r *reader) history(text string) {
@@ -101,7 +101,7 @@ func (r *reader) statedResidual(stated job.Residual, err error) {
 		return
 	}
 	a := noActivation()
-	a.Text, a.OvenK, a.KgPerKg = "residual loading as stated", stated.OvenK, stated.KgPerKg
+	a.Stated, a.Text, a.OvenK, a.KgPerKg = true, "residual loading as stated", stated.OvenK, stated.KgPerKg
 	a.Origin = catalog.Origin{Source: "as stated", Confidence: catalog.Assumption, Note: "not checked here"}
 	r.q.Activation = a
 }

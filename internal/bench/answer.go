@@ -80,7 +80,7 @@ func newCase(c *catalog.Catalog, q *Question) (*routes.Case, error) {
 		Reclaimed: heated(q.Kind), // it may be: nothing is known of the lot
 		Name:      q.Solvent.Name, Solvent: q.Solvent.Key, BatchM3: q.VolumeM3, BatchesPerYear: 1, Water: q.Water, FreeWaterM3: q.FreeWaterM3,
 		Target: q.Goal, HeaterW: q.HeaterW, VesselHeightM: q.HeightM,
-		SieveHistory: q.Activation.Key, SieveHistoryK: q.Activation.OvenK, ResidualLoading: q.Activation.KgPerKg,
+		SieveHistory: q.Activation.Key, SieveHistoryK: q.Activation.OvenK, ResidualLoading: q.Activation.KgPerKg, ResidualStated: q.Activation.Stated,
 	}
 	if !given(q.Goal) {
 		lot.Target = 1 // none: nothing has to be shown

@@ -7,6 +7,7 @@ import (
 
 	"parch/internal/quantity"
 	"parch/internal/steps"
+	"parch/internal/study"
 )
 
 // Dissolved lots are warned of by the study; what the step itself rests on that
@@ -84,10 +85,7 @@ func (a *Answer) warnSoak() {
 
 func (a *Answer) warnIsotherm() {
 	i := a.Question.Agent.Isotherm
-	if history := a.Question.Activation; history.Borrowed {
-		a.warning(`what %s holds after activation is not known: %.2g g/100 g is taken from zeolites, and the band, %.2g to %.2g g/100 g, is an assumption; where it is known, state it with --activated "residual ..."`,
-			a.Question.Agent.Plain(), 100*history.KgPerKg, 100*history.Low, 100*history.High)
-	}
+	a.Warnings = append(a.Warnings, study.Borrowed(a.Case, a.Agent)...)
 	if t := a.Question.TempK; i.TMaxK > 0 && (t < i.TMinK-farK || t > i.TMaxK+farK) {
 		a.warning("%s lies outside the %.0f to %.0f °C of the isotherm: extrapolated", quantity.FormatTemperature(t), i.TMinK-zeroCelsius, i.TMaxK-zeroCelsius)
 	}

@@ -190,7 +190,7 @@ func (f *flow) soak(place int) (turn, error) {
 		return turn{}, err
 	}
 	rate := f.lot.stillRateOr(f.run.Settings.StirredAt(f.run.Route, place))
-	loading, residual := f.lot.loading(f.run.Route[place].Agent), f.lot.column(f.lot.residual())
+	loading, residual := f.lot.loading(f.run.Route[place].Agent), f.lot.residualOn(f.run.Route[place].Agent)
 	f.dry(func(i int, a *steps.Aside) (float64, bool) {
 		a.Loading, a.ResidualKgPerKg, a.Rate = loading[i], residual[i], rate[i]
 		return quick.Water(f.water[i], f.kg[i], a), true
@@ -211,7 +211,7 @@ func (f *flow) column(place int) (turn, error) {
 	if err != nil {
 		return turn{}, err
 	}
-	loading, residual, rate := f.lot.loading(f.run.Route[place].Agent), f.lot.column(f.lot.residual()), f.lot.columnRate()
+	loading, residual, rate := f.lot.loading(f.run.Route[place].Agent), f.lot.residualOn(f.run.Route[place].Agent), f.lot.columnRate()
 	t := f.pumped(place)
 	f.dry(func(i int, a *steps.Aside) (float64, bool) {
 		a.Loading, a.ResidualKgPerKg, a.Rate = loading[i], residual[i], rate[i]

@@ -3,12 +3,14 @@ package doubt
 import (
 	"fmt"
 	"math"
+	"slices"
 	"strconv"
 	"time"
 
 	"parch/catalog"
 	"parch/internal/costs"
 	"parch/internal/quantity"
+	"parch/internal/routes"
 	"parch/internal/spread"
 )
 
@@ -90,6 +92,23 @@ func (l *Lot) residual() spread.Input {
 	return spread.Around(name, lot.ResidualLoading/v.SI, lot.ResidualLoading, lot.ResidualLoading*v.SI, why(v, "its history, a factor of "+v.Text))
 }
 
+// residualOn is the water on a sorbent; on one that is no zeolite it is off by a factor
+// of its own.
+func (l *Lot) residualOn(agent string) []float64 {
+	if l.Case.Lot.ResidualLoading == 0 { // stated to be empty
+		return constant(0, l.n)
+	}
+	onZeolite := l.column(l.residual())
+	if !l.Case.Borrows(agent) {
+		return onZeolite
+	}
+	on := slices.Clone(l.practice(routes.OxideHistory))
+	for i := range on {
+		on[i] *= onZeolite[i]
+	}
+	return on
+}
+
 // loading is what a sorbent takes up. A band of 1 means that none is stated.
 func (l *Lot) loading(agent string) []float64 {
 	a := l.Case.Catalog.Agents[agent]
@@ -159,6 +178,7 @@ func (l *Lot) practice(key string) []float64 {
 var Practised = []string{
 	"heat-share", "trap-efficiency", "trap-setup", "trap-attended-share", "trap-shutdown", "vapour-loss-per-day", "soak-attended",
 	"oven-attended", "salt-attended", "reactive-attended", "reactive-spent", "forerun-attended", "karl-fischer-time", "buy-attended",
+	routes.OxideHistory,
 }
 
 func practised(v catalog.Value) string {
@@ -171,6 +191,7 @@ var practiceWords = map[string]string{
 	"vapour-loss-per-day": "vapour past the condenser", "soak-attended": "attended time of a soak", "oven-attended": "attended time of an oven run",
 	"salt-attended": "attended time of a salt", "reactive-attended": "attended time of a reactive agent", "reactive-spent": "time to hand over spent agent",
 	"forerun-attended": "time to set up a forerun", "karl-fischer-time": "time of a Karl Fischer test", "buy-attended": "time of an order",
+	routes.OxideHistory: "water on silica gel or alumina over that on a zeolite",
 }
 
 // price is the factor on an item's price; nil for a rate of the site, which is known.

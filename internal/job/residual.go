@@ -58,7 +58,7 @@ func (r *reader) stated(n *document.Node, out *Lot) (ok bool) {
 		n.Fail("%s: %s; write it like \"residual 1.5 g/100 g\" or \"residual 1.5 g/100 g, 300 °C\"", quantity.Quote(n.Text()), err)
 		return true
 	}
-	out.SieveHistoryK, out.ResidualLoading = residual.OvenK, residual.KgPerKg
+	out.SieveHistoryK, out.ResidualLoading, out.ResidualStated = residual.OvenK, residual.KgPerKg, true
 	r.note(n, "the sieve is taken to hold %s as stated; it is not checked", quantity.Format(residual.KgPerKg, quantity.MassRatio, "g/100 g", 3))
 	return true
 }

@@ -145,6 +145,7 @@ type Lot struct {
 	SieveHistory    string       // key of catalog.History, or ""
 	SieveHistoryK   float64      // temperature where given as one, else 0
 	ResidualLoading float64      // kg/kg, from the history
+	ResidualStated  bool         // by the owner of the sorbent
 	FailedBatch     *FailedBatch // nil where neither the lot nor the site says it
 	WaterBand       *WaterBand   // of Water; nil where one reading is given
 	VesselHeightM   float64      // 0: from the vessel's charge

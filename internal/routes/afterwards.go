@@ -15,7 +15,7 @@ func (c *Case) Life(run *Run, place int) (steps.SieveLife, error) {
 	choice := run.Settings.at(run.Route, place)
 	agent := c.Catalog.Agents[o.Agent]
 	return steps.FollowSieve(c.Mixture, o.In, c.Goal(), choice.soakHours*3600, c.sorbent(o.Agent, Discard), c.soakRig(choice.stirred), steps.LifeRules{
-		Kg: o.AgentKg, FreshKgPerKg: c.Lot.ResidualLoading, FadePerCycle: agent.Fade.SI, MostCycles: int(agent.Lives.SI),
+		Kg: o.AgentKg, FreshKgPerKg: c.ResidualOn(o.Agent), FadePerCycle: agent.Fade.SI, MostCycles: int(agent.Lives.SI),
 	}, lifeBatches)
 }
 

@@ -116,7 +116,7 @@ func (e sorbentEnd) apply(s steps.Sorbent) steps.Sorbent {
 // with what they are in words.
 func (c *Case) endsOf(a Asked) (good, bad sorbentEnd, told []string) {
 	band := math.Max(1, c.Catalog.Agents[a.Agent].LoadingBand)
-	good, bad = sorbentEnd{band, c.Lot.ResidualLoading}, sorbentEnd{1 / band, c.Lot.ResidualLoading}
+	good, bad = sorbentEnd{band, c.ResidualOn(a.Agent)}, sorbentEnd{1 / band, c.ResidualOn(a.Agent)}
 	if band > 1 {
 		told = append(told, fmt.Sprintf("loading, a factor of %.2g either way", band))
 	}

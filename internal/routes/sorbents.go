@@ -104,7 +104,7 @@ func (c *Case) sorbent(agent, after string) steps.Sorbent {
 	}
 	s := steps.Sorbent{
 		Key: agent, Name: a.Plain(), Loading: a.Isotherm.LoadingKgPerKg, DataFromPa: a.Isotherm.LowestPa,
-		ResidualKgPerKg: c.Lot.ResidualLoading, CapacityShare: share * c.loadingFactor(agent), Unfit: c.unfit(a),
+		ResidualKgPerKg: c.ResidualOn(agent), CapacityShare: share * c.loadingFactor(agent), Unfit: c.unfit(a),
 		BeadDiameterM: a.BeadDiameter.SI, BeadKgPerM3: a.BeadDensity.SI, Porosity: a.BeadPorosity.SI, Tortuosity: a.BeadTortuosity.SI,
 		HoldUpM3PerKg: a.HoldUp.SI, MinDoseKgPerM3: c.practice("dose-minimum"), MaxDoseKgPerM3: a.MaxDose.SI,
 	}
@@ -115,6 +115,24 @@ func (c *Case) sorbent(agent, after string) steps.Sorbent {
 		s.HeatOfSorptionJPerMol, s.HeatCapacityJPerKgK = a.HeatOfUptake.SI, a.HeatCapacity.SI
 	}
 	return s
+}
+
+// Borrows reports whether what a sorbent holds is taken over from zeolites with the
+// lot's history, because nothing is known of its own.
+func (c *Case) Borrows(agent string) bool {
+	a := c.Catalog.Agents[agent]
+	return a != nil && a.Kind == "oxide" && !c.Lot.ResidualStated
+}
+
+// OxideHistory is the operating fact for what other sorbents hold by what zeolites do.
+const OxideHistory = "oxide-history"
+
+// ResidualOn is the water (kg/kg) on a sorbent after the lot's history.
+func (c *Case) ResidualOn(agent string) float64 {
+	if c.Borrows(agent) {
+		return c.Lot.ResidualLoading * c.practice(OxideHistory)
+	}
+	return c.Lot.ResidualLoading
 }
 
 // alcohols take the surface of oxides: measured loadings lie a factor of 2 to 67

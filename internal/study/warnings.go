@@ -67,15 +67,14 @@ func runWarnings(k *routes.Case, run routes.Run) []string {
 			if agent.LoadingBand > 1 {
 				add("%s: loading known to a factor of %.2g only", agent.Name, agent.LoadingBand)
 			}
-			if agent.Kind == "oxide" {
-				add("%s: its history is taken to leave what it leaves on a molecular sieve, an assumption; such a gel is activated cooler", agent.Name)
-			}
-			add("the sieve is taken to hold %.2g g/100 g from its history; this and the mixing rate of a still vessel rule the result (fitted to few published dryings, most within a factor of 2)", k.Lot.ResidualLoading*100)
+			w = append(w, Borrowed(k, o.Agent)...)
+			add("the sieve is taken to hold %.2g g/100 g from its history; this and the mixing rate of a still vessel rule the result (fitted to few published dryings, most within a factor of 2)", k.ResidualOn(o.Agent)*100)
 			if k.Lot.FreeWaterM3 > 0 && len(run.Outcomes) == 1 {
 				add("free water goes over the sieve: the soak is computed as if it were dissolved, and the sieve warms; draw it off first")
 			}
 		case steps.Column:
-			add("the column's outlet rests on the diffusion of water into the beads, which may be overstated by a factor of two, and on the sieve's history (%.2g g/100 g)", k.Lot.ResidualLoading*100)
+			w = append(w, Borrowed(k, o.Agent)...)
+			add("the column's outlet rests on the diffusion of water into the beads, which may be overstated by a factor of two, and on the sieve's history (%.2g g/100 g)", k.ResidualOn(o.Agent)*100)
 		case steps.Salt:
 			add("a salt is claimed to take the share of water that it took from ether when it was measured, whatever its equilibrium says")
 		case steps.Reactive:
@@ -93,6 +92,17 @@ func runWarnings(k *routes.Case, run routes.Run) []string {
 		add("no emission factor for part of this route: CO2e left out")
 	}
 	return w
+}
+
+// Borrowed says that what a sorbent holds is not known, and what is taken instead.
+func Borrowed(k *routes.Case, agent string) []string {
+	if !k.Borrows(agent) {
+		return nil
+	}
+	band := k.Catalog.Practice[routes.OxideHistory]
+	zeolite := 100 * k.Lot.ResidualLoading
+	return []string{fmt.Sprintf("what %s holds after activation is not known: %.2g g/100 g is taken from zeolites, and the band, %.2g to %.2g g/100 g, is an assumption; where it is known, state it as \"residual ...\"",
+		k.Catalog.Agents[agent].Plain(), zeolite*band.SI, zeolite*band.Low, zeolite*band.High)}
 }
 
 // ownWarnings say which entries of the user's own a route with these agents and
