@@ -147,6 +147,9 @@ func (a *Answer) restsOnReaction() {
 	for _, r := range a.Question.Agent.Residuals {
 		if r.Solvent == a.Question.Solvent.Key {
 			a.rests("left in "+a.Question.Solvent.Name, r.Water.Text+", "+r.How, r.Water.Origin)
+			if factor := a.Case.Catalog.Doubts[catalog.DoubtReactive]; !r.Water.Banded() {
+				a.restsOn("how far that may be off, a factor either way", &factor)
+			}
 			measured = true
 		}
 	}

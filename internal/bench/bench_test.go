@@ -436,3 +436,25 @@ func BenchmarkTrap(b *testing.B) {
 		answer(b, "trap", "toluene", map[string]string{"water": "225 mg/kg"})
 	}
 }
+
+// What a reactive agent leaves has the band of the figure it rests on: of magnesium in
+// methanol 12 to 54 mg/kg (two groups; Williams & Lawton 2010, from memory), of one
+// figure alone a factor of 1.5 (assumption), of a pair without any that of the class, a
+// factor of ten.
+func TestReactiveResidualsHaveTheirOwnBand(t *testing.T) {
+	for _, c := range []struct {
+		agent, solvent string
+		out, low, high float64
+	}{
+		{"magnesium", "methanol", 53.6, 12, 54}, {"sodium", "toluene", 31.4, 31.4 / 1.5, 31.4 * 1.5}, {"calcium-hydride", "dichloromethane", 13.2, 13.2 / 1.5, 13.2 * 1.5},
+	} {
+		a := answer(t, "reactive", c.solvent, map[string]string{"water": "200 mg/kg", "agent": c.agent})
+		if near := func(x, want float64) bool { return math.Abs(x*1e6/want-1) < 1e-9 }; !near(a.Out.Water(), c.out) || !near(a.Low, c.low) || !near(a.High, c.high) {
+			t.Errorf("%s in %s: %g, %g to %g; want %g, %g to %g mg/kg", c.agent, c.solvent, a.Out.Water()*1e6, a.Low*1e6, a.High*1e6, c.out, c.low, c.high)
+		}
+	}
+	a := answer(t, "reactive", "toluene", map[string]string{"water": "400 mg/kg", "agent": "calcium-hydride"})
+	if ratio := a.High / a.Low; ratio < 70 || ratio > 110 { // a class of x10 either way, as far as the lot's own water allows
+		t.Errorf("class band of %g", ratio)
+	}
+}

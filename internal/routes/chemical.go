@@ -63,9 +63,10 @@ func (c *Case) measured(a *catalog.Agent) steps.Measured {
 		if r.Solvent != c.Solvent.Key {
 			continue
 		}
-		m := steps.Measured{Water: r.Water.SI, Source: string(r.Water.Confidence) + ", " + r.Water.Source}
-		if r.Water.Banded() {
-			m.Band = r.Water.High / r.Water.Low
+		m := steps.Measured{Water: r.Water.SI, Low: r.Water.Low, High: r.Water.High, Source: string(r.Water.Confidence) + ", " + r.Water.Source}
+		if !r.Water.Banded() {
+			factor := c.Catalog.Doubts[catalog.DoubtReactive].SI
+			m.Low, m.High = m.Water/factor, m.Water*factor
 		}
 		return m
 	}

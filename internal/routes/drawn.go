@@ -161,7 +161,7 @@ func (c *Case) pumpOver(lot steps.Lot, kg float64, column, agent string, goal fl
 func (c *Case) distilOff(lot steps.Lot, kg float64, agent string) (steps.Outcome, error) {
 	a, found, rig := c.reactiveAgent(agent), c.measured(c.Catalog.Agents[agent]), c.reactiveRig(agent)
 	if left, ok := c.drawn.Reactive[agent]; ok {
-		found.Water *= left
+		found.Water, found.Low, found.High = found.Water*left, found.Low*left, found.High*left
 		a.ClassActivity *= left
 	}
 	rig.Surplus, rig.LeastKgPerM3 = 1, kg/steps.LotVolume(c.Mixture, lot, rig.RoomK)

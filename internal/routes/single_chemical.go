@@ -107,7 +107,7 @@ func (c *Case) singleReactive(a Asked, s *Single) (err error) {
 	s.tellGoal(a.Goal, rig.RefluxS, agent.LeastRefluxS)
 	s.Low, s.High = s.Figure("residual, low")*1e-6, s.Figure("residual, high")*1e-6
 	if found.Water > 0 {
-		s.Bands = append(s.Bands, "what was measured for the pair")
+		s.Bands = append(s.Bands, fmt.Sprintf("what was measured for the pair, %s to %s", quantity.FormatWater(found.Low), quantity.FormatWater(found.High)))
 	} else {
 		s.Bands = append(s.Bands, fmt.Sprintf("what agents of the class leave, a factor of %.3g either way", agent.ClassBand))
 	}

@@ -130,7 +130,8 @@ func (q *QuickReactive) Water(water float64, a *Aside) (out float64, ok bool) {
 	if q.found.Water > 0 {
 		out = q.found.Water * a.Left
 		if q.short {
-			out *= orOne(q.found.Band)
+			_, high := q.found.band()
+			out *= high / q.found.Water
 		}
 		return math.Min(out, water), true
 	}

@@ -121,7 +121,7 @@ func TestQuickSaltIsTheSalt(t *testing.T) {
 func TestQuickReactiveIsTheAgent(t *testing.T) {
 	m := mixture(t, "toluene")
 	feed := litres(m, 2, 300e-6)
-	for _, found := range []steps.Measured{{}, {Water: 31e-6, Band: 2}} {
+	for _, found := range []steps.Measured{{}, {Water: 31e-6, Low: 12e-6, High: 62e-6}} {
 		for _, refluxS := range []float64{0, 3 * 3600} {
 			agent, rig := reactive("calcium-hydride"), pot()
 			agent.LeastRefluxS, rig.RefluxS = 3600, math.Max(refluxS, 60)
@@ -129,7 +129,7 @@ func TestQuickReactiveIsTheAgent(t *testing.T) {
 			for _, a := range asides(0.02) {
 				drawn, seen := agent, found
 				drawn.ClassActivity *= a.Left
-				seen.Water *= a.Left
+				seen.Water, seen.Low, seen.High = seen.Water*a.Left, seen.Low*a.Left, seen.High*a.Left
 				full, err := steps.RunReactive(turnedOut(m, a), feed, drawn, seen, rig)
 				if err != nil {
 					t.Fatal(err)

@@ -33,9 +33,18 @@ func (a ReactiveAgent) wasteClass() WasteClass { return cmp.Or(a.Waste, Reactive
 
 // Measured is a residual that was found for the pair in print.
 type Measured struct {
-	Water  float64 // kg/kg; 0: none is known
-	Band   float64 // factor either way; 0: none is stated
-	Source string
+	Water     float64 // kg/kg; 0: none is known
+	Low, High float64 // kg/kg, its own band; 0: none is stated
+	Source    string
+}
+
+// band is that of the figure itself where none is stated.
+func (m Measured) band() (low, high float64) {
+	low, high = m.Low, m.High
+	if low == 0 {
+		low = m.Water
+	}
+	return low, math.Max(high, m.Water)
 }
 
 // ReactiveRig is the still and how it is run.
@@ -107,7 +116,8 @@ type residual struct {
 func (a ReactiveAgent) residual(m *thermo.Mixture, feed Lot, found Measured, rig ReactiveRig) (residual, error) {
 	r := residual{why: AtMeasured}
 	if found.Water > 0 {
-		r.water, r.low, r.high = found.Water, found.Water/orOne(found.Band), found.Water*orOne(found.Band)
+		r.water = found.Water
+		r.low, r.high = found.band()
 		r.text = fmt.Sprintf("measured: %s left %s in %s (%s)", a.called(), quantity.FormatWater(found.Water), m.Solvent.Called(), found.Source)
 	} else {
 		r.why = AtFloor
