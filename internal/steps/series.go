@@ -96,7 +96,8 @@ func SeriesFor(m *thermo.Mixture, feed Lot, goal, timeS float64, n int, sorbent 
 		return reachedBySeries(o, n), nil
 	}
 	if o, err = over(math.Max(most, dose)); err != nil || o.Out.Water() > goal {
-		return missedBySeries(o, goal, n), err
+		unhurried := waterAfter(m, feed, EqualCharges(n, most*volumeM3, longestSoakS/float64(n)), sorbent, rig)
+		return missedBySeries(o, goal, n, unhurried > goal), err
 	}
 	lnDose, err := thermo.Brent(func(lnDose float64) float64 {
 		return math.Log(waterAfter(m, feed, charges(math.Exp(lnDose)), sorbent, rig) / goal)
@@ -125,7 +126,7 @@ func SeriesUntil(m *thermo.Mixture, feed Lot, goal, doseKgPerM3 float64, n int, 
 	longest := math.Log(longestSoakS / float64(n))
 	o, err := over(longest)
 	if err != nil || o.Out.Water() > goal {
-		return missedBySeries(o, goal, n), err
+		return missedBySeries(o, goal, n, true), err
 	}
 	lnTimeS, err := thermo.Brent(func(lnTimeS float64) float64 {
 		return math.Log(waterAfter(m, feed, charges(lnTimeS), sorbent, rig) / goal)
@@ -190,13 +191,18 @@ func reachedBySeries(o Outcome, n int) Outcome {
 	return o
 }
 
-func missedBySeries(o Outcome, goal float64, n int) Outcome {
+// missedBySeries says why a series stops short of goal (kg/kg); full means that all the
+// time there is would not bring it there.
+func missedBySeries(o Outcome, goal float64, n int, full bool) Outcome {
 	g, left := quantity.FormatWater(goal), quantity.FormatWater(o.Out.Water())
-	if o.Why = AtTime; goal <= o.Floor {
+	switch {
+	case goal <= o.Floor:
 		o.Why, o.WhyText = AtFloor, fmt.Sprintf("floor: the sieve's residual loading leaves %s, whatever the number of charges", quantity.FormatWater(o.Floor))
-		return o
+	case full:
+		o.Why, o.WhyText = AtCapacity, fmt.Sprintf("capacity: %d charges of %.3g g/L in all leave %s, not %s, and hold too little for it however long they stand", n, o.Figure("dose"), left, g)
+	default:
+		o.Why, o.WhyText = AtTime, fmt.Sprintf("time: %d charges leave %s, not %s; more time, a stirrer or one charge more", n, left, g)
 	}
-	o.WhyText = fmt.Sprintf("time: %d charges leave %s, not %s; more time, a stirrer or one charge more", n, left, g)
 	return o
 }
 

@@ -38,6 +38,29 @@ func TestSeriesSolved(t *testing.T) {
 	}
 }
 
+// Water beyond what two charges can hold is missed for want of capacity, by a given
+// dose too; a goal within their reach for want of time.
+func TestWhatASeriesMissesBy(t *testing.T) {
+	m := mixture(t, "ethanol")
+	sieve, rig := sieve3A(t, 0.02), bottle(t, "ethanol", 0.08)
+	for _, c := range []struct {
+		water, hours      float64
+		ofDose, givenDose steps.Stop
+	}{
+		{0.3, 24, steps.AtCapacity, steps.AtCapacity},
+		{1500e-6, 2, steps.AtTime, steps.AtTarget}, // a given dose takes the time it needs
+	} {
+		feed := litres(m, 1, c.water)
+		o, err := steps.SeriesFor(m, feed, 50e-6, c.hours*3600, 2, sieve, rig)
+		if err != nil || o.Why != c.ofDose {
+			t.Errorf("dose for %g kg/kg: %q, %v", c.water, o.WhyText, err)
+		}
+		if o, err = steps.SeriesUntil(m, feed, 50e-6, 100, 2, sieve, rig); err != nil || o.Why != c.givenDose {
+			t.Errorf("time for %g kg/kg: %q, %v", c.water, o.WhyText, err)
+		}
+	}
+}
+
 // Cakes of powder that would drink up a lot are not charged: what is missed is told of
 // as much as leaves a twentieth.
 func TestSeriesLeavesSomeOfTheLot(t *testing.T) {
@@ -45,7 +68,7 @@ func TestSeriesLeavesSomeOfTheLot(t *testing.T) {
 	powder := sieve3A(t, 0.02)
 	powder.HoldUpM3PerKg = 2e-3 // two charges of 300 kg/m3 hold more than all
 	o, err := steps.SeriesFor(m, litres(m, 1, 400e-6), 1e-9, day(1), 2, powder, bottle(t, "toluene", 0.08))
-	if err != nil || o.Why == steps.AtTarget {
+	if err != nil || o.Why != steps.AtFloor {
 		t.Fatalf("%q, %v", o.WhyText, err)
 	}
 	near(t, "left of the lot", o.Out.SolventKg/o.In.SolventKg, 0.05, 1e-3)
