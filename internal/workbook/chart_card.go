@@ -44,7 +44,7 @@ func courseOf(r *routeModel) drawnCourse {
 }
 
 const (
-	cardChartWidth  = 280 // pixels, within the column of text
+	cardChartWidth  = 238 // pixels, within the column of text
 	cardChartHeight = 190
 )
 
