@@ -284,7 +284,7 @@ func (c *cardModel) expectRows() (first int) {
 		c.g.put(cardFirst+i, row, h)
 		c.heads(row, helperExpect+i, x)
 	}
-	c.g.heights[row] = linesHigh(2)
+	c.g.heights[row] = linesHigh(3)
 	first = row + 1
 	most := 1
 	for _, w := range c.words {
