@@ -7,6 +7,7 @@ import (
 
 	"gonum.org/v1/gonum/integrate/quad"
 
+	"parch/internal/quantity"
 	"parch/internal/thermo"
 )
 
@@ -378,6 +379,10 @@ func (b *boiling) segment(x float64) error {
 			}
 		}
 		l := b.aqueousShare(v.YWater)
+		if l <= 0 { // a wet pot may give a drier vapour than a less wet one
+			failed = fmt.Errorf("%w: the condensate of a pot at %s does not split at %.3g °C; start from a drier lot", ErrNoTrap,
+				quantity.FormatWater(b.m.MassFraction(water/(water+rest+solventPerWater*water))), b.eq.ReceiverK-273.15)
+		}
 		mol = water / (l * xAq) / efficiency
 		return mol, mol * b.molarMass(v.YWater), mol * (b.latent(v) + (1-l)*b.reheat(v.TempK))
 	}

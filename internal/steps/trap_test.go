@@ -230,6 +230,7 @@ func TestTrapBalances(t *testing.T) {
 		if eq.Mixture.MoleFraction(water) < eq.Azeotrope.YWater && o.Out.Water() > water*(1+1e-9) {
 			rt.Fatalf("wetter out (%g) than in (%g)", o.Out.Water(), water)
 		}
+		timeGoesOn(rt, o)
 		if o.HoursAttended > o.HoursTotal {
 			rt.Fatalf("%g h attended of %g", o.HoursAttended, o.HoursTotal)
 		}
@@ -237,6 +238,40 @@ func TestTrapBalances(t *testing.T) {
 			rt.Fatalf("below the floor: %g < %g", o.Out.Water(), o.Floor)
 		}
 	})
+}
+
+// timeGoesOn holds a course to a clock: no point of it is earlier than the one before.
+func timeGoesOn(t interface{ Fatalf(string, ...any) }, o steps.Outcome) {
+	for i, p := range o.Course[1:] {
+		if p.Hours < o.Course[i].Hours-1e-6 {
+			t.Fatalf("%g h after %g h", p.Hours, o.Course[i].Hours)
+		}
+	}
+}
+
+// A wet pot of 2-butanone boils off a vapour that is drier than that of a less wet one:
+// its condensate does not split, and no trap starts there. Where one starts, time goes on.
+func TestAWetPotMayNotSplit(t *testing.T) {
+	refused := 0
+	for _, receiverC := range []float64{10, 12, 15, 20, 30} {
+		eq, err := steps.NewTrapEquilibrium(mixture(t, "2-butanone"), receiverC+273.15, 110e3)
+		if err != nil {
+			t.Fatal(err)
+		}
+		for _, water := range []float64{0.15, 0.3, 0.4, 0.45, 0.5} {
+			o, err := steps.RunTrap(eq, litres(eq.Mixture, 1, water), 0.12, rig("light"), rules)
+			if err == nil {
+				timeGoesOn(t, o)
+				continue
+			}
+			if refused++; !errors.Is(err, steps.ErrNoTrap) || !strings.Contains(err.Error(), "does not split") || water < 0.3 {
+				t.Errorf("%g kg/kg, receiver at %g °C: %v", water, receiverC, err)
+			}
+		}
+	}
+	if refused == 0 {
+		t.Error("nothing refused")
+	}
 }
 
 func closes(t *rapid.T, what string, in, out float64) {
