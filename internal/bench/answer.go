@@ -58,7 +58,7 @@ func Ask(c *catalog.Catalog, q *Question) (*Answer, error) {
 		return nil, wetter
 	}
 	var ofLot []string
-	a.Cautions, ofLot = study.Remarks(k, routes.Route{stage})
+	a.Cautions, ofLot = study.Remarks(k, routes.Route{stage}, a.Outcome)
 	a.advise()
 	a.warn(ofLot)
 	a.cite()
@@ -77,7 +77,7 @@ func newCase(c *catalog.Catalog, q *Question) (*routes.Case, error) {
 		KarlFischer: "coulometric", Cooling: job.Tap,
 	}}
 	lot := job.Lot{
-		Reclaimed: heated(q.Kind), // it may be: nothing is known of the lot
+		Reclaimed: q.Kind.Heated(), // it may be: nothing is known of the lot
 		Name:      q.Solvent.Name, Solvent: q.Solvent.Key, BatchM3: q.VolumeM3, BatchesPerYear: 1, Water: q.Water, FreeWaterM3: q.FreeWaterM3,
 		Target: q.Goal, HeaterW: q.HeaterW, VesselHeightM: q.HeightM,
 		SieveHistory: q.Activation.Key, SieveHistoryK: q.Activation.OvenK, ResidualLoading: q.Activation.KgPerKg, ResidualStated: q.Activation.Stated,

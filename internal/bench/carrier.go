@@ -26,11 +26,6 @@ func (q *Question) stage() routes.Stage {
 	return s
 }
 
-// heated tells the steps that boil the lot.
-func heated(k steps.Kind) bool {
-	return k == steps.Trap || k == steps.Forerun || k == steps.Reactive
-}
-
 // carrier finds the carrier by key, name or alias.
 func (r *reader) carrier() {
 	typed, ok := r.flags["carrier"]

@@ -87,9 +87,8 @@ func (c *Case) Overbooked(run *Run) string {
 // refuseHazard holds back what the site excludes by hazard.
 func (c *Case) refuseHazard(s Stage) string {
 	excluded := func(hazard string) bool { return slices.Contains(c.Job.Exclude.Hazards, hazard) }
-	boils := slices.Contains([]steps.Kind{steps.Trap, steps.Forerun, steps.Reactive}, s.Kind)
 	switch {
-	case boils && excluded(job.Boiling):
+	case s.Kind.Heated() && excluded(job.Boiling):
 		return "the job excludes boiling solvents"
 	case s.Kind == steps.Reactive && excluded(job.ReactiveWaste) && c.leavesReactiveWaste(s.Agent):
 		return "the job excludes reactive waste"

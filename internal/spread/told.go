@@ -82,6 +82,16 @@ func ToldShare(p float64, draws int) float64 {
 	return math.Round(100*step*math.Round(p/step)) / 100
 }
 
-// ToldCorrelation is a correlation of ranks to a tenth: its standard error is about
-// 1/sqrt(n) where there is none, 0.02 at the usual number of draws.
-func ToldCorrelation(c float64) float64 { return math.Round(10*c) / 10 }
+// errorsOfNone is how far from nothing a correlation has to be, in standard errors, so
+// that none of some hundred inputs of each route is named by chance.
+const errorsOfNone = 4
+
+// ToldCorrelation is a correlation of ranks to a tenth, or zero where so many draws
+// show as much by chance: without one the standard error is 1/sqrt(n-1) (Spearman),
+// 0.02 at the usual number of draws.
+func ToldCorrelation(c float64, draws int) float64 {
+	if math.Abs(c)*math.Sqrt(float64(draws-1)) < errorsOfNone {
+		return 0
+	}
+	return math.Round(10*c) / 10
+}

@@ -20,6 +20,9 @@ const (
 	Buy        Kind = "buy"
 )
 
+// Heated tells the steps that boil the lot.
+func (k Kind) Heated() bool { return k == Trap || k == Forerun || k == Reactive }
+
 // Stop says why a step stops.
 type Stop string
 

@@ -7,7 +7,6 @@ import (
 
 	"github.com/shopspring/decimal"
 
-	"parch/internal/steps"
 	"parch/internal/study"
 )
 
@@ -74,7 +73,7 @@ func TestHazardsAreKeptOut(t *testing.T) {
 	yaml := "exclude: {hazards: [boiling, used sieve in an oven]}\n" + strings.Split(demo(t), "title:")[0] + "lots: [{name: lot, solvent: toluene, batch: 10 L, batches: 20 /yr, water: 400 mg/kg, target: 80 mg/kg}]\n"
 	for _, r := range compare(t, yaml, study.Options{}).Lots[0].Routes {
 		for i, s := range r.Run.Route {
-			if s.Kind == steps.Trap || s.Kind == steps.Forerun || s.Kind == steps.Reactive {
+			if s.Kind.Heated() {
 				t.Errorf("%s boils at step %d", r.ID, i+1)
 			}
 		}

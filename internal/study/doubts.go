@@ -214,7 +214,7 @@ func (d *doubts) movers(ctx context.Context, l *Lot, outcomes []*doubt.Outcome) 
 			var all []Mover
 			mine := spread.RanksOf(result.values)
 			for k, in := range inputs {
-				if c := spread.ToldCorrelation(ranks[k].Correlation(mine)); math.Abs(c) >= leastMoving {
+				if c := spread.ToldCorrelation(ranks[k].Correlation(mine), len(mine)); math.Abs(c) >= leastMoving {
 					all = append(all, Mover{Of: result.of, Input: in.Name, Why: in.Why, Correlation: c})
 				}
 			}

@@ -123,3 +123,29 @@ func TestAStillOfTheWrongSizeIsTold(t *testing.T) {
 		}
 	}
 }
+
+// A carrier fills the flask too: 100 L of tert-butanol go into 50 L at 67 % in three
+// charges, with their dichloromethane in four. What is told of the still is what the
+// steps are computed with.
+func TestTheStillChargesToldAreTheOnesComputed(t *testing.T) {
+	l := compare(t, "lots: [{solvent: tert-butanol, batch: 100 L, batches: 6 /yr, water: 1 %, target: 200 mg/kg}]\n", study.Options{}).Lots[0]
+	carried := 0
+	for _, r := range l.Routes {
+		most := 0.0
+		for _, o := range r.Run.Outcomes {
+			if n := o.Figure("still charges"); n > most { // not a number where there is none
+				most = n
+			}
+		}
+		want := fmt.Sprintf("the still takes the lot in %g charges", most)
+		if o := r.Run.Outcomes[0]; o.Kind.Heated() && !slices.Contains(r.Warnings, want) {
+			t.Errorf("%s: want %q among %q", r.ID, want, r.Warnings)
+		}
+		if strings.HasPrefix(r.ID, "trap:dichloromethane") && most == 4 {
+			carried++
+		}
+	}
+	if carried == 0 {
+		t.Error("no route with the carrier takes a charge more")
+	}
+}

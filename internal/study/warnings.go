@@ -55,11 +55,14 @@ func runWarnings(k *routes.Case, run routes.Run) []string {
 		pieces = append(pieces, o.Agent, o.Apparatus)
 	}
 	w = append(w, ownWarnings(k, pieces)...)
+	told := false
 	for _, o := range run.Outcomes {
 		w = append(w, o.Warnings...)
+		if o.Kind.Heated() && !told {
+			w, told = append(w, stillWarnings(k, stillCharges(k, run.Outcomes...))...), true
+		}
 		switch o.Kind {
 		case steps.Trap:
-			w = append(w, stillWarnings(k)...)
 			add("below %s a trap is taken to work at %.2g of the ideal, and its outlet is never claimed under %s (common practice, no source)",
 				quantity.FormatWater(k.Catalog.Practice["trap-efficiency-below"].SI), k.Catalog.Practice["trap-efficiency"].SI, quantity.FormatWater(k.Catalog.Practice["trap-outlet-minimum"].SI))
 		case steps.Soak:
@@ -132,9 +135,20 @@ const (
 	leastFill   = 0.25 // of the flask; a smaller charge cannot be watched or stirred
 )
 
-func stillWarnings(k *routes.Case) []string {
+// stillCharges are those of the step that takes most: a carrier fills the flask too.
+func stillCharges(k *routes.Case, outcomes ...steps.Outcome) int {
+	_, most := k.Still()
+	for _, o := range outcomes {
+		if n := o.Figure("still charges"); finite(n) {
+			most = max(most, int(n))
+		}
+	}
+	return most
+}
+
+func stillWarnings(k *routes.Case, charges int) []string {
 	var w []string
-	still, charges := k.Still()
+	still, _ := k.Still()
 	switch fill := k.Lot.BatchM3 / float64(charges) / still.Volume.SI; {
 	case charges > manyCharges:
 		w = append(w, fmt.Sprintf("the still takes the lot in %d charges: a larger one is wanted", charges))

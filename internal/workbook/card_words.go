@@ -175,7 +175,7 @@ func settingWords(r *routeModel, o *steps.Outcome, stirred bool) string {
 	if o.Condenser.RunM3PerS > 0 {
 		parts = append(parts, fmt.Sprintf("cooling water %s L/min, warms by %s K", significant(o.Condenser.RunM3PerS*6e4), significant(o.Condenser.RunRiseK)))
 	}
-	if r.lot.Job.HeaterW > 0 && (o.Kind == steps.Trap || o.Kind == steps.Forerun || o.Kind == steps.Reactive) {
+	if r.lot.Job.HeaterW > 0 && o.Kind.Heated() {
 		parts = append(parts, "heater "+quantity.FormatPower(r.lot.Job.HeaterW))
 	}
 	if len(parts) == 0 {
