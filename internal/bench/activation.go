@@ -80,18 +80,19 @@ func (r *reader) history(text string) {
 			return
 		}
 	}
-	ovenK, rest, err := leadingTemperature(text)
+	oven, rest, err := leadingTemperature(text)
 	if err != nil {
 		r.mistake(fmt.Sprintf("--activated: %s is not a history known here", quantity.Quote(text)),
 			`write the oven's temperature ("300 C", "300 C closed hot", "250 C, closed hot, 30 d", "200 C, vacuum 1 hPa"), what the sieve holds ("residual 1.5 g/100 g") or one of: `+strings.Join(r.historyKeys(), ", "))
 		return
 	}
+	r.askedIn(oven)
 	kept, err := aftercare(rest)
 	if err != nil {
 		r.mistake(fmt.Sprintf("--activated: %s: %s", quantity.Quote(text), err), `after the temperature may stand: closed hot, left open, 30 d (days since), vacuum 1 hPa`)
 		return
 	}
-	r.fromOven(text, ovenK, kept)
+	r.fromOven(text, oven.SI, kept)
 }
 
 // statedResidual takes what the owner of the sieve says that it holds.
@@ -114,15 +115,15 @@ func (r *reader) historyKeys() (keys []string) {
 }
 
 // leadingTemperature takes the longest beginning of the text that is a temperature.
-func leadingTemperature(text string) (tK float64, rest []string, err error) {
+func leadingTemperature(text string) (oven quantity.Reading, rest []string, err error) {
 	words := strings.Fields(strings.ReplaceAll(text, ",", " "))
 	for n := min(3, len(words)); n > 0; n-- {
 		reading, err := quantity.Parse(strings.Join(words[:n], " "), quantity.Temperature)
 		if err == nil {
-			return reading.SI, words[n:], nil
+			return reading, words[n:], nil
 		}
 	}
-	return 0, nil, fmt.Errorf("no temperature")
+	return oven, nil, fmt.Errorf("no temperature")
 }
 
 // aftercare reads what was done with a sieve after the oven, each of it once.

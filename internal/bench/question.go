@@ -58,5 +58,5 @@ func (q *Question) KgPerM3(water float64) float64 {
 
 func given(x float64) bool { return !math.IsNaN(x) }
 
-// InFahrenheit reports whether the temperature was given in °F.
+// InFahrenheit reports whether a temperature was given in °F.
 func (q *Question) InFahrenheit() bool { return q.inFahrenheit }

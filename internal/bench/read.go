@@ -60,8 +60,8 @@ const zeroCelsius = 273.15
 var (
 	anyVolume      = limits{5e-5, 10, "0.05 L to 10000 L"}
 	anyFree        = limits{0, 10, "0 mL to less than the volume"}
-	anyTemperature = limits{zeroCelsius - 20, zeroCelsius + 100, "-20 °C to 100 °C"}
-	anyReceiver    = limits{zeroCelsius + 1, zeroCelsius + 40, "1 °C to 40 °C; water would freeze in a colder one"}
+	anyTemperature = limits{zeroCelsius - 20, zeroCelsius + 100, "-20 °C to 100 °C (-4 °F to 212 °F)"}
+	anyReceiver    = limits{zeroCelsius + 1, zeroCelsius + 40, "1 °C to 40 °C (34 °F to 104 °F); water would freeze in a colder one"}
 	anyPressure    = limits{1e3, 110e3, "1 kPa to 110 kPa (10 hPa to 1100 hPa), absolute"}
 	anyPower       = limits{10, 1e5, "10 W to 100 kW"}
 	anyHeight      = limits{0.01, 5, "0.01 m to 5 m"}
@@ -81,7 +81,17 @@ func (r *reader) measure(flag string, d quantity.Dimension, l limits, otherwise 
 		return otherwise
 	}
 	reading, err := quantity.Parse(text, d)
+	if d == quantity.Temperature {
+		r.askedIn(reading)
+	}
 	return r.within(flag, text, reading, err, l, otherwise)
+}
+
+// askedIn remembers a temperature in °F: the answer then has both.
+func (r *reader) askedIn(t quantity.Reading) {
+	if quantity.IsUnit(quantity.Temperature, t.Unit, "°F") {
+		r.q.inFahrenheit = true
+	}
 }
 
 func (r *reader) within(flag, text string, reading quantity.Reading, err error, l limits, otherwise float64) float64 {
@@ -114,7 +124,6 @@ func (r *reader) conditions() {
 	q.HeaterW = r.measure("power", quantity.Power, anyPower, 0)
 	q.HeightM = r.measure("height", quantity.Length, anyHeight, 0)
 	q.PeroxideKgPerM3 = r.measure("peroxide", quantity.MassConcentration, anyPeroxide, math.NaN())
-	q.inFahrenheit = strings.HasSuffix(strings.ToUpper(strings.TrimSpace(r.flags["temperature"])), "F")
 }
 
 // amounts reads how much there is, of the lot and of the agent.

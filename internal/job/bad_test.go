@@ -162,7 +162,7 @@ lots:
   - name: first
     solvent: &x toluene
     batch: 1e400 L
-    water: 480 mg/L
+    water: 480 ppmv
 `
 	want := []string{
 		`job.yaml:1: title: "+44" begins with "+"; in a sheet that would be taken for a formula. Begin with a letter or a digit`,
@@ -179,7 +179,7 @@ lots:
 		`job.yaml:14: lots[1]: "target" is missing`,
 		`job.yaml:15: lots[1].solvent: anchors (&name) are not used here; write the value out where it is needed`,
 		`job.yaml:16: lots[1].batch: "1e400 L" is too large`,
-		`job.yaml:17: lots[1].water: "480 mg/L": "mg/L" would need the density of the wet solvent; give the water by mass; allowed: mg/kg, ppm, g/kg, % m/m, %, kg/kg, ug/g, mg/g`,
+		`job.yaml:17: lots[1].water: "480 ppmv": "ppmv" is by volume of what is not clear; write "mg/kg", or "% V/V"; allowed: mg/kg, ppm, g/kg, % m/m, %, kg/kg, ug/g, mg/g; with a density also mg/L, g/L, ug/mL, mmol/L, mol/L, % m/V, % V/V`,
 	}
 	if diff := cmp.Diff(want, linesOf(t, text)); diff != "" {
 		t.Error(diff)

@@ -73,13 +73,13 @@ func (r *reader) limitsOf(f document.Fields, lot *Lot) {
 	var okWater, okTarget bool
 	target := f.Need("target")
 	okWater = r.water(f.Need("water"), lot)
-	lot.Target, okTarget = r.measure(target, quantity.WaterContent, between(1e-8, 0.5, "0.01 mg/kg to 500000 mg/kg"))
+	lot.Target, okTarget = r.content(target, lot, between(1e-8, 0.5, "0.01 mg/kg to 500000 mg/kg"))
 	if okWater && okTarget && lot.Target >= lot.Water && lot.FreeWaterM3 > 0 {
 		target.Fail("%s is not below the water now (%s), yet there is free water: a lot with free water is not dry. Check both, or remove the free water",
 			quantity.Quote(target.Text()), quantity.FormatWater(lot.Water))
 	}
 	if n := f.Get("not below"); n != nil {
-		lot.NotBelow, _ = r.measure(n, quantity.WaterContent, between(0, 0.5, "0 mg/kg to 500000 mg/kg"))
+		lot.NotBelow, _ = r.content(n, lot, between(0, 0.5, "0 mg/kg to 500000 mg/kg"))
 		if okTarget && lot.NotBelow >= lot.Target {
 			n.Fail("%s is not below the target (%s)", quantity.Quote(n.Text()), quantity.FormatWater(lot.Target))
 		}

@@ -20,7 +20,7 @@ func (r *reader) water(n *document.Node, lot *Lot) (ok bool) {
 	case n != nil && !n.IsList() && isRange(n):
 		return r.waterRange(n, lot)
 	case n == nil || n.IsList() || n.Text() != saturatedWord:
-		lot.Water, ok = r.measure(n, quantity.WaterContent, between(0, 0.5, "0 mg/kg to 500000 mg/kg, or saturated"))
+		lot.Water, ok = r.content(n, lot, between(0, 0.5, "0 mg/kg to 500000 mg/kg, or saturated"))
 		return ok
 	}
 	lot.Saturated = true

@@ -19,27 +19,24 @@ func isRange(n *document.Node) bool { return strings.Contains(n.Text(), " to ") 
 // geometric mean. The first number may leave out the unit.
 func (r *reader) waterRange(n *document.Node, lot *Lot) bool {
 	from, to, _ := strings.Cut(n.Text(), " to ")
-	last, err := quantity.Parse(to, quantity.WaterContent)
-	if err != nil {
-		n.Fail("%v", err)
+	high, ok := r.contentOf(n, to, lot, bandLimits())
+	if !ok {
 		return false
 	}
-	first, err := quantity.Parse(from, quantity.WaterContent)
-	if err != nil {
-		first, err = quantity.Parse(from+" "+last.Unit, quantity.WaterContent)
+	if last, _ := r.parseContent(to, lot); isNumber(from) {
+		from += " " + last.Unit
 	}
-	if err != nil {
-		n.Fail("%v", err)
+	low, ok := r.contentOf(n, from, lot, bandLimits())
+	if !ok {
 		return false
 	}
-	for _, x := range []float64{first.SI, last.SI} {
-		if !bandLimits().hold(x) {
-			n.Fail("%s is not possible here; allowed: %s", quantity.Quote(n.Text()), wetEnough)
-			return false
-		}
-	}
-	lot.Water = math.Sqrt(first.SI * last.SI)
-	return r.setBand(n, lot, WaterBand{Low: first.SI, High: last.SI})
+	lot.Water = math.Sqrt(low * high)
+	return r.setBand(n, lot, WaterBand{Low: low, High: high})
+}
+
+func isNumber(text string) bool {
+	_, err := quantity.Parse(text, quantity.Number)
+	return err == nil
 }
 
 // Distributions of the water of a lot.
@@ -51,8 +48,8 @@ const (
 // waterBand reads the ends of a band and how the lots lie in it.
 func (r *reader) waterBand(n *document.Node, lot *Lot) bool {
 	f := n.Map("low", "typical", "high", "distribution")
-	low, okLow := r.measure(f.Need("low"), quantity.WaterContent, bandLimits())
-	high, okHigh := r.measure(f.Need("high"), quantity.WaterContent, bandLimits())
+	low, okLow := r.content(f.Need("low"), lot, bandLimits())
+	high, okHigh := r.content(f.Need("high"), lot, bandLimits())
 	kind := lognormal
 	if d := f.Get("distribution"); d != nil {
 		kind = d.OneOf(lognormal, uniform)
@@ -65,7 +62,7 @@ func (r *reader) waterBand(n *document.Node, lot *Lot) bool {
 		lot.Water = (low + high) / 2
 	}
 	if t := f.Get("typical"); t != nil {
-		typical, ok := r.measure(t, quantity.WaterContent, bandLimits())
+		typical, ok := r.content(t, lot, bandLimits())
 		switch {
 		case !ok:
 			return false

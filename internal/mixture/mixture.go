@@ -17,6 +17,12 @@ func Pair(c *catalog.Catalog, s *catalog.Solvent) *thermo.Mixture {
 	return &thermo.Mixture{Water: &c.Solvents[waterKey].Pure, Solvent: &s.Pure, NRTL: s.Water.NRTL, Limits: s.Water.Limits}
 }
 
+// KgPerM3 is the density of a solvent with a water content (kg/kg) at tK, from additive
+// volumes.
+func KgPerM3(c *catalog.Catalog, s *catalog.Solvent, water, tK float64) float64 {
+	return 1 / (water/c.Solvents[waterKey].Pure.DensityKgPerM3.At(tK) + (1-water)/s.Pure.DensityKgPerM3.At(tK))
+}
+
 // alcoholContractionM3PerMol is that of ethanol and water: 913.8 kg/m3 at 50 % m/m
 // and 20 °C (OIML R 22, from memory) is 1.04 cm3/mol less than the two volumes. The
 // other alcohols shrink by 2.6 to 4.5 in the same units (from memory).

@@ -19,6 +19,7 @@ type Solution struct {
 	ReagentMol   float64 // of the reagent that a mol % is counted against; 0: not stated
 	SolventKg    float64 // that the reagent is used in
 	ReagentLabel string  // for the note; "": "reagent"
+	NoReagent    bool    // where the content is read, none can be stated
 }
 
 // content is one way to write a water content that is not by mass.
@@ -64,9 +65,12 @@ func ParseContent(text string, s Solution) (Reading, error) {
 	if !ok {
 		r, err := Parse(text, WaterContent)
 		if err != nil && symbol != "" {
-			return r, fmt.Errorf("%w; with a density also %s; with a reagent also mol %%", err, strings.Join(contentUnits(), ", "))
+			return r, fmt.Errorf("%w; %s", err, s.opens())
 		}
 		return r, err
+	}
+	if s.NoReagent && c.needs == reagentWanted {
+		return Parse(text, WaterContent) // which says why not
 	}
 	if err := s.has(c.needs, text, c.symbol); err != nil {
 		return Reading{}, err
@@ -90,6 +94,15 @@ func findContent(symbol string) (content, bool) {
 		return content{}, false
 	}
 	return contents[i], true
+}
+
+// opens tells which units there are beside those by mass.
+func (s Solution) opens() string {
+	text := "with a density also " + strings.Join(contentUnits(), ", ")
+	if s.NoReagent {
+		return text
+	}
+	return text + "; with a reagent also mol %"
 }
 
 // contentUnits lists what a density opens up.

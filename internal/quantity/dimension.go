@@ -77,6 +77,12 @@ func Units(d Dimension) []string {
 	return list
 }
 
+// IsUnit reports whether a unit as typed is that of the dimension: "f" is "°F".
+func IsUnit(d Dimension, typed, symbol string) bool {
+	u, ok := lookUp(d, typed)
+	return ok && u.symbol == symbol
+}
+
 func lookUp(d Dimension, symbol string) (unit, bool) {
 	if full, ok := spellings[symbol]; ok {
 		symbol = full

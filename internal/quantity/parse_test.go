@@ -97,6 +97,26 @@ func TestExactDecimals(t *testing.T) {
 	}
 }
 
+// 68 °F are 20 °C (NIST SP 811, Appendix B). A part per million is by mass here, however
+// that is written; one by volume is refused.
+func TestSpellings(t *testing.T) {
+	for _, text := range []string{"68 f", "68 F", "68f", "68 °f", "68 degF", "68 deg f", "68 fahrenheit", "20 c", "20 C", "20 celsius", "20 Celsius", "20 degC", "20 degc", "20 degrees C"} {
+		if got, err := Parse(text, Temperature); err != nil || math.Abs(got.SI-293.15) > 1e-9 {
+			t.Errorf("%s: %g K, %v", text, got.SI, err)
+		}
+	}
+	for _, text := range []string{"480 ppmw", "480 ppm w/w", "480 ppm(w)", "480 ppm (m/m)", "480 ppm by mass", "480 wtppm"} {
+		if got, err := Parse(text, WaterContent); err != nil || got.SI != 480e-6 || got.Note == "" {
+			t.Errorf("%s: %g, note %q, %v", text, got.SI, got.Note, err)
+		}
+	}
+	for _, text := range []string{"480 ppmv", "480 ppm v/v", "480 ppm(v)"} {
+		if _, err := Parse(text, WaterContent); err == nil || !strings.Contains(err.Error(), `is by volume of what is not clear; write "mg/kg"`) {
+			t.Errorf("%s: %v", text, err)
+		}
+	}
+}
+
 func TestNotes(t *testing.T) {
 	for text, want := range map[string]string{
 		"480 ppm":   `"ppm" read as mg/kg (by mass)`,

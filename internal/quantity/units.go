@@ -98,6 +98,9 @@ var spellings = map[string]string{
 	"µg": "ug", "μg": "ug", "lbs": "lb",
 	"µg/g": "ug/g", "μg/g": "ug/g", "wt%": "% m/m", "wt %": "% m/m", "% w/w": "% m/m", "%m/m": "% m/m", "%w/w": "% m/m", "g/100g": "g/100 g",
 	"C": "°C", "degC": "°C", "deg C": "°C", "℃": "°C", "° C": "°C", "F": "°F", "degF": "°F", "deg F": "°F", "℉": "°F", "° F": "°F",
+	"c": "°C", "°c": "°C", "degc": "°C", "deg c": "°C", "celsius": "°C", "Celsius": "°C", "degrees C": "°C", "degrees Celsius": "°C", "degrees celsius": "°C",
+	"f": "°F", "°f": "°F", "degf": "°F", "deg f": "°F", "fahrenheit": "°F", "Fahrenheit": "°F", "degrees F": "°F", "degrees Fahrenheit": "°F", "degrees fahrenheit": "°F",
+	"ppmw": "ppm", "ppm w": "ppm", "ppm(w)": "ppm", "ppm (w)": "ppm", "ppm w/w": "ppm", "ppm m/m": "ppm", "ppm (m/m)": "ppm", "ppm (w/w)": "ppm", "ppm by mass": "ppm", "ppm by weight": "ppm", "wtppm": "ppm", "wt ppm": "ppm",
 	"torr": "Torr", "/Pa": "1/Pa", "Pa^-1": "1/Pa", "Pa-1": "1/Pa",
 	"hour": "h", "hours": "h", "hr": "h", "hrs": "h", "minute": "min", "minutes": "min", "second": "s", "seconds": "s", "sec": "s",
 	"day": "d", "days": "d", "weeks": "week", "year": "yr", "years": "yr", "a": "yr",
@@ -110,6 +113,10 @@ var spellings = map[string]string{
 	"/h": "1/h", "/min": "1/min", "/s": "1/s",
 	"J/(mol K)": "J/mol/K", "J/(kg K)": "J/kg/K", "kJ/(kg K)": "kJ/kg/K", "J/(g K)": "J/g/K", "Pa·s": "Pa s", "mPa·s": "mPa s", "m²/s": "m2/s", "cm²/s": "cm2/s",
 }
+
+// byVolume: what a volume of water in a volume of solvent would be depends on both
+// densities, and gases are counted so too.
+const byVolume = `is by volume of what is not clear; write "mg/kg", or "% V/V"`
 
 const needsDensity = "would need the density of the wet solvent; give the water by mass"
 
@@ -126,6 +133,7 @@ var refused = map[Dimension]map[string]string{
 		"mM": needsDensity, "% V/V": needsDensity, "% v/v": needsDensity, "vol%": needsDensity, "vol %": needsDensity, "%V/V": needsDensity, "%v/v": needsDensity,
 		"% m/V": needsDensity, "% m/v": needsDensity, "% w/v": needsDensity,
 		"mol %": "is an amount of substance; give the water by mass", "mol%": "is an amount of substance; give the water by mass",
+		"ppmv": byVolume, "ppm v/v": byVolume, "ppm(v)": byVolume, "ppm (v)": byVolume, "ppm (v/v)": byVolume, "ppm by volume": byVolume,
 		"ppb": `is too fine to be measured; write "mg/kg"`,
 	},
 	MassConcentration: {

@@ -22,6 +22,8 @@ type page struct {
 	w   io.Writer
 	err error
 	all bool // every route, also those that nobody would take
+
+	fahrenheit bool // every temperature in both units
 }
 
 func (p *page) line(s string) {

@@ -17,7 +17,7 @@ import (
 // StepText prints what one step does for a terminal. It ends with cautions and
 // sources.
 func StepText(w io.Writer, a *bench.Answer) error {
-	p := &page{w: w}
+	p := &page{w: w, fahrenheit: a.Question.InFahrenheit()}
 	p.say(0, 3, "%s", stepTitle(a))
 	p.line("")
 	p.stepResult(a)
@@ -26,7 +26,7 @@ func StepText(w io.Writer, a *bench.Answer) error {
 	p.watch(a)
 	p.figures(&a.Outcome)
 	p.notes("Read as", a.Question.Notes)
-	p.notes("Warnings", a.Warnings)
+	p.notes("Warnings", p.eachBoth(a.Warnings))
 	p.basis(a.Basis)
 	p.stepCautions(a.Cautions)
 	p.heading("Sources:")
@@ -76,7 +76,7 @@ const resultIndent, topicWidth = 3, 12
 
 // topic prints a paragraph beside its short heading.
 func (p *page) topic(heading, format string, args ...any) {
-	text := wrapped(fmt.Sprintf(format, args...), width-resultIndent-topicWidth)
+	text := wrapped(p.both(fmt.Sprintf(format, args...)), width-resultIndent-topicWidth)
 	for i, s := range text {
 		if i > 0 {
 			heading = ""
@@ -188,6 +188,9 @@ func (p *page) figures(o *steps.Outcome) {
 		value, unit := smaller(f)
 		if text := quantity.Significant(value, 3); text != quantity.Unknown {
 			rows = append(rows, []string{f.Name, text, unit})
+			if p.fahrenheit && unit == "°C" {
+				rows = append(rows, []string{"", inFahrenheit(value), "°F"})
+			}
 		}
 	}
 	if len(rows) == 0 {
@@ -230,7 +233,7 @@ func ownData(o catalog.Origin) string {
 func (p *page) stepCautions(all []catalog.Caution) {
 	p.heading("Cautions:")
 	for _, c := range byLevel(all) {
-		p.say(5, 4, "%s, %s: %s [%s, %s]", c.Level, c.Code, c.Text, c.Source, c.Confidence)
+		p.say(5, 4, "%s, %s: %s [%s, %s]", c.Level, c.Code, p.both(c.Text), c.Source, c.Confidence)
 	}
 }
 

@@ -2,6 +2,7 @@ package report
 
 import (
 	"math"
+	"slices"
 
 	"parch/internal/bench"
 	"parch/internal/quantity"
@@ -15,11 +16,15 @@ func (p *page) watch(a *bench.Answer) {
 	if a.Kind != steps.Trap && a.Kind != steps.Forerun {
 		return
 	}
+	const headColumn = 2
 	where := "In the pot\nmg/kg"
 	if a.Overhead {
 		where = "In the product\nmg/kg"
 	}
 	columns := []column{{"Hours", true, 0}, {"Pot\n°C", true, 0}, {"Head\n°C", true, 0}, {"Receiver\nmL", true, 0}, {where, true, 0}}
+	if p.fahrenheit {
+		columns = slices.Insert(columns, headColumn+1, column{"Head\n°F", true, 0})
+	}
 	if a.Carrier != "" {
 		columns = append(columns, column{"Carrier\n%", true, 0}, column{"Drawn off\nmL", true, 0})
 	}
@@ -36,6 +41,9 @@ func (p *page) watch(a *bench.Answer) {
 			collected = pt.DrawnM3
 		}
 		row := []string{quantity.Significant(pt.Hours, 3), kelvins(pt.PotK), kelvins(pt.HeadK), drawn(collected), watchedWater(a, pt.Water)}
+		if p.fahrenheit {
+			row = slices.Insert(row, headColumn+1, inFahrenheit(quantity.In(pt.HeadK, quantity.Temperature, "°C")))
+		}
 		if a.Carrier != "" {
 			row = append(row, quantity.Significant(100*pt.Carrier, 3), drawn(pt.DrawnM3))
 		}
