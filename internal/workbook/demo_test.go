@@ -11,12 +11,15 @@ import (
 	"parch/internal/study"
 )
 
+// usual are the options of the program when nothing else is asked for.
+var usual = study.Options{Draws: 2000, Seed: 1}
+
 var loadDemo = sync.OnceValues(func() (*study.Report, error) {
-	return runDemo(nil)
+	return runDemo(nil, usual)
 })
 
 // runDemo runs the demonstration job, changed by edit.
-func runDemo(edit func(*job.Job)) (*study.Report, error) {
+func runDemo(edit func(*job.Job), options study.Options) (*study.Report, error) {
 	c, err := catalog.Load()
 	if err != nil {
 		return nil, err
@@ -29,7 +32,7 @@ func runDemo(edit func(*job.Job)) (*study.Report, error) {
 	if edit != nil {
 		edit(j)
 	}
-	return study.Compare(context.Background(), j, c, study.Options{})
+	return study.Compare(context.Background(), j, c, options)
 }
 
 func demo(t *testing.T) *study.Report {

@@ -121,17 +121,23 @@ const (
 // are measured in digits of 11 points, and readers round them up to whole pixels.
 const widestUnit = 7.1
 
-// cardScale is the scale in per cent at which the largest part that is printed by
-// itself fits on a page, whatever typeface it is printed in. A reader that scales to
-// the page by itself would spread all parts over the pages of one.
-func (g *grid) cardScale() int {
+// pageScale is the scale at which rows that are printed by themselves fit on an upright
+// page of either size, whatever typeface they are printed in.
+func (g *grid) pageScale(r rows) float64 {
 	width := 0.0
 	for _, w := range g.widths[:g.printColumns] {
 		width += w * widestUnit
 	}
-	scale := min(1, uprightWidth/width)
+	return min(1, uprightWidth/width, uprightHeight*reserve/g.span(r.first, r.last))
+}
+
+// cardScale is the scale in per cent at which the largest part that is printed by
+// itself fits. A reader that scales to the page by itself would spread all parts over
+// the pages of one.
+func (g *grid) cardScale() int {
+	scale := 1.0
 	for _, r := range g.printed {
-		scale = min(scale, uprightHeight*reserve/g.span(r.first, r.last))
+		scale = min(scale, g.pageScale(r))
 	}
 	return max(10, int(100*scale))
 }

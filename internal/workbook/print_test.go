@@ -27,12 +27,19 @@ func (b *book) onLetter(t *testing.T) []byte {
 	return b.repack(t, changed)
 }
 
+// printedBook is a workbook on paper.
+type printedBook struct {
+	pdf   string         // its file
+	pages map[string]int // of each sheet
+	first map[string]int // page of each sheet, from 1
+}
+
 var footer = regexp.MustCompile(`(?m)^ *(\S.*?) {2,}Page \d+ of \d+ *$`)
 
 // pagesBySheet prints workbooks with an independent program and counts the pages of
 // each sheet by the name in the footer. Where typefaces are named, no other is there to
 // stand in for the workbook's own.
-func pagesBySheet(t *testing.T, only []string, files ...[]byte) []map[string]int {
+func pagesBySheet(t *testing.T, only []string, files ...[]byte) []printedBook {
 	t.Helper()
 	soffice, pdftotext := outside.Program(t, "soffice"), outside.Program(t, "pdftotext")
 	dir := t.TempDir()
@@ -54,16 +61,22 @@ func pagesBySheet(t *testing.T, only []string, files ...[]byte) []map[string]int
 	if text, err := office(args).CombinedOutput(); err != nil {
 		t.Fatalf("soffice: %v\n%s", err, text)
 	}
-	all := make([]map[string]int, len(files))
+	all := make([]printedBook, len(files))
 	for i := range files {
-		out, err := exec.CommandContext(t.Context(), pdftotext, "-layout", filepath.Join(dir, fmt.Sprintf("book%d.pdf", i)), "-").Output()
+		pdf := filepath.Join(dir, fmt.Sprintf("book%d.pdf", i))
+		out, err := exec.CommandContext(t.Context(), pdftotext, "-layout", pdf, "-").Output()
 		if err != nil {
 			t.Fatal(err)
 		}
-		all[i] = map[string]int{}
-		for _, page := range strings.Split(string(out), "\f") {
-			if m := footer.FindAllStringSubmatch(page, -1); m != nil {
-				all[i][m[len(m)-1][1]]++
+		all[i] = printedBook{pdf, map[string]int{}, map[string]int{}}
+		for no, page := range strings.Split(string(out), "\f") {
+			m := footer.FindAllStringSubmatch(page, -1)
+			if m == nil {
+				continue
+			}
+			sheet := m[len(m)-1][1]
+			if all[i].pages[sheet]++; all[i].first[sheet] == 0 {
+				all[i].first[sheet] = no + 1
 			}
 		}
 	}
@@ -113,8 +126,8 @@ func TestPagesToSignAndForTheBench(t *testing.T) {
 	small := readBook(t, written(t, demo(t)))
 	crowd := readBook(t, written(t, many(30, 3)))
 	books := [][]byte{written(t, demo(t)), small.onLetter(t), written(t, synthetic()), crowd.onLetter(t)}
-	for i, pages := range pagesBySheet(t, nil, books...) {
-		checkPages(t, i, pages, []int{3, 3, 2, 30}[i])
+	for i, b := range pagesBySheet(t, nil, books...) {
+		checkPages(t, i, b.pages, []int{3, 3, 2, 30}[i])
 	}
 }
 
@@ -130,14 +143,15 @@ func checkPages(t *testing.T, book int, pages map[string]int, cards int) {
 var standIns = []string{"Carlito", "Liberation Sans", "Liberation Sans Narrow", "DejaVu Sans", "DejaVu Sans Mono", "DejaVu Serif",
 	"Noto Sans", "Open Sans", "FreeSans"}
 
-// The pages do not depend on the typeface that stands in: with each one that the
-// system has, as if it had no other.
+// The pages, and that they can be read, do not depend on the typeface that stands in:
+// with each one that the system has, as if it had no other.
 func TestPagesInAnyTypeface(t *testing.T) {
 	if testing.Short() {
 		t.Skip("prints workbooks")
 	}
 	small := readBook(t, written(t, demo(t)))
 	books := [][]byte{written(t, demo(t)), small.onLetter(t)}
+	decision := layoutOf(t).decision()
 	tried := 0
 	families := typefaces(t)
 	for _, family := range standIns {
@@ -146,8 +160,9 @@ func TestPagesInAnyTypeface(t *testing.T) {
 		}
 		tried++
 		t.Run(family, func(t *testing.T) {
-			for i, pages := range pagesBySheet(t, families[family], books...) {
-				checkPages(t, i, pages, 3)
+			for i, b := range pagesBySheet(t, families[family], books...) {
+				checkPages(t, i, b.pages, 3)
+				checkLetters(t, b.pdf, b.first[sheetDecision], decision)
 			}
 		})
 	}

@@ -17,6 +17,8 @@ const (
 	rangeHours = rangeLitre + 3
 	rangeShare = rangeHours + 3
 	rangeRank  = rangeShare + 1
+	rangeLot   = rangeRank + 1 // not printed
+	rangeKey   = rangeLot + 1  // orders the routes that are sure enough by lot, then by rank
 )
 
 const notDrawn = "not drawn"
@@ -26,7 +28,8 @@ func seen(v float64, unit, format string) cell { return finite(cutTo(v, shownDig
 
 func (l *layout) ranges() *grid {
 	g := newGrid(sheetRanges, "How sure the figures are, what moves them, and where the choice turns. Values of the program; ranks and the cost against litres a month follow the prices.",
-		tabResult, checkCell(), 20, 27, 10.5, 12, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5)
+		tabResult, checkCell(), 20, 27, 10.5, 12, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 8, 8)
+	g.printColumns = rangeRank
 	g.mixed, g.frozenRows, g.frozenColumns = true, frameRows, 2
 	l.banner(g, frameRows+1)
 	l.rangeBlock(g)
@@ -50,7 +53,8 @@ func (l *layout) rangeBlock(g *grid) {
 	columns = append(columns, three("Water", "mg/kg")...)
 	columns = append(columns, three("Cost per litre", l.money("L"))...)
 	columns = append(columns, three("Hours", "h")...)
-	columns = append(columns, column{"Cheapest in draws", "%"}, column{"Rank where sure enough", "1"})
+	columns = append(columns, column{"Cheapest in draws", "%"}, column{"Rank where sure enough", "1"},
+		column{"Lot no.", "1"}, column{"Key", "1"})
 	name := fmt.Sprintf("Nine draws in ten lie between 5 %% and 95 %%. Sure enough: a chance of at least %.0f %%", 100*l.report.Job.Assurance)
 	if l.report.Draws == 0 {
 		name = "Ranges and chances: not drawn in this run"
@@ -119,6 +123,13 @@ func (l *layout) rangeRow(g *grid, i int, r *routeModel) {
 		rank = float64(r.rank)
 	}
 	g.put(rangeRank, row, derived(fmt.Sprintf(`IF(D%d="no","",%s)`, row, on(sheetCompare, at(compareRank, l.compareRows.at(i)))), rank).shown("0"))
+	g.put(rangeLot, row, count(r.lot.no))
+	key := rank
+	if v, ranked := rank.(float64); ranked {
+		key = float64(r.lot.no*len(l.routes)) + v
+	}
+	all := area(rangeRank, l.rangeRows.first, l.rangeRows.last)
+	g.put(rangeKey, row, derived(fmt.Sprintf(`IF(LEN(O%d)>0,P%d*ROWS(%s)+O%d,"")`, row, row, all, row), key).shown("0"))
 }
 
 // moverBlock lists the inputs that move the results of the route to take.

@@ -51,11 +51,11 @@ func (l *layout) verdict(lot *lotModel) string {
 			reach++
 		}
 	}
-	text := fmt.Sprintf("%s (%s): %s", capital(best.Label), best.ID, l.aim(best, reach))
-	text += fmt.Sprintf(" It leaves %s after %s h of attended work, %s h in all.", quantity.FormatWater(best.Run.WaterOut), significant(best.Run.HoursAttended), significant(best.Run.HoursTotal))
+	text := fmt.Sprintf("%s (%s): %s; %s h in all", capital(best.Label), best.ID, l.aim(best, reach), significant(best.Run.HoursTotal))
 	if head, share := largest(best); share > 0 {
-		text += fmt.Sprintf(" %s is %.0f %% of its cost.", headNames[head], 100*share)
+		text += fmt.Sprintf("; %.0f %% of the cost is %s", 100*share, strings.ToLower(headNames[head]))
 	}
+	text += "."
 	for _, r := range lot.Unsure() {
 		text += fmt.Sprintf(" %s stands before it and is not recommended: %s.", r.ID, r.WhyNot)
 	}
@@ -77,10 +77,10 @@ func noVerdict(lot *lotModel) string {
 
 func (l *layout) aim(best *routeModel, reach int) string {
 	aims := map[string]string{"cost": "the lowest cost per litre", "time": "the shortest time", "waste": "the least waste", "energy": "the least energy"}
-	of := fmt.Sprintf("of %d routes that reach the limit.", reach)
+	of := fmt.Sprintf("of %d routes that reach the limit", reach)
 	switch {
 	case reach == 1:
-		return "the only route that reaches the limit."
+		return "the only route that reaches the limit"
 	case best.Rank > 1:
 		return aims[l.report.Job.Objective] + " among those sure enough, " + of
 	}
@@ -130,30 +130,51 @@ func hazards(lot *lotModel, r *routeModel) (parts []string) {
 	return append(parts, cautionTexts(r, "danger", "caution")...)
 }
 
-// commonHazards hold for the recommended routes of all of several lots.
-func commonHazards(lots []*lotModel) (common []string) {
-	n := 0
+// shared are cautions that hold for the same lots.
+type shared struct {
+	lots  []string // their numbers
+	texts []string
+}
+
+// sharedCautions are those of the recommended routes of at least two lots, grouped by
+// the lots, the most lots first.
+func sharedCautions(lots []*lotModel) (groups []shared) {
+	byText, order := map[string][]string{}, []string{}
 	for _, lot := range lots {
 		best := lot.best()
 		if best == nil {
 			continue
 		}
-		all := hazards(lot, best)
-		if n++; n == 1 {
-			common = all
-		} else {
-			common = slices.DeleteFunc(slices.Clone(common), func(s string) bool { return !slices.Contains(all, s) })
+		for _, s := range hazards(lot, best) {
+			if byText[s] == nil {
+				order = append(order, s)
+			}
+			if no := fmt.Sprint(lot.no); !slices.Contains(byText[s], no) {
+				byText[s] = append(byText[s], no)
+			}
 		}
 	}
-	if n < 2 {
-		return nil
+	for _, s := range order {
+		of := byText[s]
+		if len(of) < 2 {
+			continue
+		}
+		i := slices.IndexFunc(groups, func(g shared) bool { return slices.Equal(g.lots, of) })
+		if i < 0 {
+			i, groups = len(groups), append(groups, shared{lots: of})
+		}
+		groups[i].texts = append(groups[i].texts, s)
 	}
-	return common
+	sortBy(groups, func(g shared) float64 { return -float64(len(g.lots)) })
+	return groups
 }
 
-// except leaves out what is said elsewhere.
-func except(all, said []string) []string {
-	return slices.DeleteFunc(slices.Clone(all), func(s string) bool { return slices.Contains(said, s) })
+// ownHazards are those of a lot that no other lot shares.
+func ownHazards(lot *lotModel, all []*lotModel) []string {
+	said := sharedCautions(all)
+	return slices.DeleteFunc(slices.Clone(hazards(lot, lot.best())), func(s string) bool {
+		return slices.ContainsFunc(said, func(g shared) bool { return slices.Contains(g.texts, s) })
+	})
 }
 
 func cautionTexts(r *routeModel, levels ...string) (out []string) {
@@ -167,14 +188,12 @@ func cautionTexts(r *routeModel, levels ...string) (out []string) {
 	return out
 }
 
-// mostTurns break-evens stand on the page to sign; Ranges has them all.
-const mostTurns = 3
-
-func turns(lot *lotModel) string {
+// turns are the break-evens of a lot, at most as many as given.
+func turns(lot *lotModel, most int) string {
 	var parts []string
 	for _, b := range lot.BreakEvens {
-		if b.Answer != "" && !b.Never && len(parts) < mostTurns {
-			parts = append(parts, sentence(capital(oneLine(b.What))+": "+b.Answer))
+		if b.Answer != "" && !b.Never && len(parts) < most {
+			parts = append(parts, sentence(capital(strings.TrimSuffix(oneLine(b.What), ", at which the best route changes"))+": "+b.Answer))
 		}
 	}
 	if len(lot.BreakEvens) > 0 && len(parts) == 0 {
@@ -194,14 +213,15 @@ func sentence(s string) string {
 	return s + "."
 }
 
-// mostDoubts of a route stand on the page to sign.
-const mostDoubts = 3
-
-// doubts are what the result turns on.
-func doubts(lot *lotModel, r *routeModel) string {
+// doubts are what the result turns on, the strongest first, at most as many as given.
+// Ranges says in full what each spread rests on.
+func doubts(lot *lotModel, r *routeModel, most int) string {
 	var parts []string
-	for _, m := range lot.Doubts[:min(len(lot.Doubts), mostDoubts)] {
-		parts = append(parts, fmt.Sprintf("%s moves the %s (rank correlation %+.2f; %s)", m.Input, m.Of, m.Correlation, m.Why))
+	for _, m := range lot.Doubts[:min(len(lot.Doubts), most)] {
+		parts = append(parts, fmt.Sprintf("%s moves the %s (%+.2f; %s)", m.Input, m.Of, m.Correlation, inShort(m.Why)))
+	}
+	if len(parts) > 0 {
+		return sentence("By rank correlation: " + strings.Join(parts, "; "))
 	}
 	if len(parts) == 0 {
 		for _, o := range r.Run.Outcomes {
@@ -214,6 +234,20 @@ func doubts(lot *lotModel, r *routeModel) string {
 		return "None named."
 	}
 	return sentence(strings.Join(parts, "; "))
+}
+
+// inShort keeps of a remark in brackets what kind of figure it is, not all that it
+// rests on.
+func inShort(s string) string {
+	head, rest, bracketed := strings.Cut(oneLine(s), " (")
+	if !bracketed {
+		return head
+	}
+	kind, _, several := strings.Cut(rest, ":")
+	if !several {
+		return oneLine(s)
+	}
+	return head + ", " + kind
 }
 
 // assumed is a figure that the recommendation rests on.

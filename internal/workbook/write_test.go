@@ -22,7 +22,7 @@ func TestSameReportSameBytes(t *testing.T) {
 			}
 		}
 	}
-	again, err := runDemo(nil)
+	again, err := runDemo(nil, usual)
 	if err != nil {
 		t.Fatal(err)
 	}
