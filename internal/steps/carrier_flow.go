@@ -70,10 +70,12 @@ func (r *refluxing) part(n Fractions) (thermo.TernarySplit, error) {
 type flow func(s *state) (state, condensed, error)
 
 // vapour is a mole at the head, kept from the pot. As much vapour leaves the pot
-// (constant molar overflow), whose latent heat counts.
+// (constant molar overflow), whose latent heat counts, and is cooled to the receiver's
+// temperature.
 func (r *refluxing) vapour(c *condensed) state {
 	y := c.head.Y
-	return state{pot: scaled(y, -1), boiledMol: 1, boiledKg: r.massKg(c.pot.Y), heatJ: r.latent(c.pot.Y, c.pot.TempK)}
+	condensed := r.latent(c.pot.Y, c.pot.TempK) + r.sensible(y, r.eq.ReceiverK, c.pot.TempK)
+	return state{pot: scaled(y, -1), boiledMol: 1, boiledKg: r.massKg(c.pot.Y), condensedJ: condensed}
 }
 
 // filling returns nothing.
@@ -98,7 +100,6 @@ func (r *refluxing) pushing(s *state) (state, condensed, error) {
 	returned := Fractions{inCarrier: d.pushedM3 / r.carrierM3()}
 	d.held[inCarrier] -= returned[inCarrier]
 	d.pot[inCarrier] += returned[inCarrier]
-	d.heatJ += r.sensible(returned, r.eq.ReceiverK, c.pot.TempK)
 	return d, c, nil
 }
 
@@ -114,11 +115,6 @@ func (r *refluxing) returning(s *state) (state, condensed, error) {
 	}
 	d := r.vapour(&c)
 	d.pot, d.aqueous = scaled(aqueous, -1), aqueous
-	returned := c.head.Y
-	for i := range returned {
-		returned[i] -= aqueous[i]
-	}
-	d.heatJ += r.sensible(returned, r.eq.ReceiverK, c.pot.TempK)
 	return d, c, nil
 }
 
@@ -131,6 +127,7 @@ func (r *refluxing) stripping(s *state) (state, condensed, error) {
 	d := r.vapour(&c)
 	d.drawn = c.head.Y
 	boiled := 1 + r.plan.RefluxRatio
-	d.boiledMol, d.boiledKg, d.heatJ = boiled, boiled*d.boiledKg, boiled*d.heatJ
+	d.condensedJ += r.plan.RefluxRatio * r.latent(c.pot.Y, c.pot.TempK) // which falls back hot
+	d.boiledMol, d.boiledKg = boiled, boiled*d.boiledKg
 	return d, c, nil
 }

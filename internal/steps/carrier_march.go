@@ -183,7 +183,7 @@ func (s *state) collect(h float64, d *state) {
 	}
 	s.boiledMol += h * d.boiledMol
 	s.boiledKg += h * d.boiledKg
-	s.heatJ += h * d.heatJ
+	s.condensedJ += h * d.condensedJ
 	s.pushedM3 += h * d.pushedM3
 }
 
@@ -219,8 +219,9 @@ func (s *state) all(i int) float64 { return s.pot[i] + s.aqueous[i] + s.held[i] 
 // note adds the present state to the course.
 func (r *refluxing) note(c *condensed) {
 	mass := r.massKg(r.s.pot)
+	r.potK, r.spentJ = c.pot.TempK, r.heatJ(&r.s, c.pot.TempK)
 	p := Point{
-		Hours: (r.heatUpJ + r.s.heatJ) / r.netW() / secondsPerHour,
+		Hours: (r.heatUpJ + r.spentJ) / r.netW() / secondsPerHour,
 		Water: r.kg(r.s.pot[inWater], inWater) / mass, Carrier: r.kg(r.s.pot[inCarrier], inCarrier) / mass,
 		BoiledKg: r.s.boiledKg, AqueousM3: r.aqueousM3(), DrawnM3: r.liquidM3(r.s.drawn, r.rig.RoomK),
 		PotK: c.pot.TempK, HeadK: c.head.TempK,

@@ -11,15 +11,15 @@ import (
 func (r *refluxing) outcome(feed Lot) Outcome {
 	n := float64(r.rig.Charges)
 	heatUpS := r.heatUpJ / r.netW()
-	trapS := r.trapped.heatJ / r.netW()
+	trapS := r.trappedJ / r.netW()
 	refluxS := math.Max(trapS, r.rules.ShortestRefluxS)
-	stripS := (r.s.heatJ - r.trapped.heatJ) / r.netW()
+	stripS := (r.spentJ - r.trappedJ) / r.netW()
 	drainings := math.Max(1, math.Ceil(r.aqueousM3()/r.rig.UsableVolumeM3-1e-9))
 	shutDownS, outK := r.rules.ShutDownS, r.rig.RoomK
 	kind, why, told := Trap, r.why, r.reached()
 	switch r.half {
 	case trapOnly:
-		shutDownS, outK = 0, r.near[0].TempK // the pot goes on hot
+		shutDownS, outK = 0, r.potK // the pot goes on hot
 	case stripOnly:
 		kind, why, told, drainings, refluxS = Forerun, r.stripWhy, r.stripped(), 0, 0
 	}
@@ -46,7 +46,7 @@ func (r *refluxing) outcome(feed Lot) Outcome {
 	o.account(r.m.Pure[inSolvent], r.rig.RoomK)
 	o.Balance.CarrierAddedKg, o.Balance.CarrierOutKg = r.plan.DoseKg+feed.CarrierKg, o.Out.CarrierKg
 	o.Balance.HeatInJ = n * r.netW() * hotS
-	o.Balance.HeatUsedJ = n * (r.heatUpJ + r.s.heatJ + r.netW()*(refluxS-trapS))
+	o.Balance.HeatUsedJ = n * (r.usedJ() + r.netW()*(refluxS-trapS))
 	r.figures(&o, heatUpS, refluxS, stripS, drainings)
 	o.Warnings = append(o.Warnings, oftenDrained(drainings, "take a larger receiver")...)
 	r.warn(&o)
@@ -104,7 +104,7 @@ func (r *refluxing) figures(o *Outcome, heatUpS, refluxS, stripS, drainings floa
 			{"still charges", "", float64(r.rig.Charges)},
 			{"equilibrium stages of the column", "", float64(r.plan.Stages)},
 			{"boiling temperature at the start", "°C", r.startK - 273.15},
-			{"boiling temperature at the end", "°C", r.near[0].TempK - 273.15},
+			{"boiling temperature at the end", "°C", r.potK - 273.15},
 			{"heat-up, each charge", "h", heatUpS / secondsPerHour},
 			{"drawing off, each charge", "h", stripS / secondsPerHour},
 			{"volume drawn off, each charge", "L", r.liquidM3(r.s.drawn, r.rig.RoomK) * litrePerM3},
@@ -117,7 +117,7 @@ func (r *refluxing) figures(o *Outcome, heatUpS, refluxS, stripS, drainings floa
 		{"still charges", "", float64(r.rig.Charges)},
 		{"carrier charged", "kg", r.plan.DoseKg},
 		{"boiling temperature at the start", "°C", r.startK - 273.15},
-		{"boiling temperature at the end", "°C", r.near[0].TempK - 273.15},
+		{"boiling temperature at the end", "°C", r.potK - 273.15},
 		{"lowest-boiling mixture", "°C", a.TempK - 273.15},
 		{"heat-up, each charge", "h", heatUpS / secondsPerHour},
 		{"reflux, each charge", "h", refluxS / secondsPerHour},

@@ -53,7 +53,7 @@ func runCarrier(half half, eq *CarrierEquilibrium, feed Lot, plan CarrierPlan, r
 	if err := r.reflux(); err != nil {
 		return Outcome{}, err
 	}
-	r.trapped, r.trappedAt = r.s, len(r.course)
+	r.trapped, r.trappedAt, r.trappedJ = r.s, len(r.course), r.spentJ
 	if half == bothHalves {
 		if err := r.strip(); err != nil {
 			return Outcome{}, err
@@ -81,7 +81,7 @@ func StripCarrier(eq *CarrierEquilibrium, feed Lot, plan CarrierPlan, rig TrapRi
 		return Outcome{}, err
 	}
 	r.note(&first)
-	r.trapped, r.trappedAt = r.s, len(r.course)
+	r.trapped, r.trappedAt, r.trappedJ = r.s, len(r.course), r.spentJ
 	if err := r.strip(); err != nil {
 		return Outcome{}, err
 	}
@@ -100,7 +100,11 @@ type refluxing struct {
 	charge        Fractions // mol of the lot and the dose
 	startK        float64
 	heatUpJ       float64
+	fromK         float64 // of the charge before it is heated
+	preFilled     Fractions
 	s             state
+	potK, spentJ  float64                        // at s: the boiling point, and the heat since the pot began to boil
+	trappedJ      float64                        // spent when the trap stopped
 	trapped       state                          // when the trap stopped
 	trappedAt     int                            // points of the course until then
 	near          [MostStages + 1]thermo.Boiling // pot and stages, where they boiled last
@@ -108,8 +112,7 @@ type refluxing struct {
 	why, stripWhy Stop
 	whyText       string
 	goal          float64 // water/(water + solvent) at which the trap stops
-	trapFromJ     float64 // heat spent and pot left when the steady return began
-	trapFromKg    float64
+	trapFromJ     float64 // heat spent when the steady return began
 	widestBand    float64 // factor on it
 	bandBasis     string
 	returns       thermo.Returns
@@ -124,7 +127,7 @@ type Fractions = thermo.Fractions
 type state struct {
 	pot, aqueous, held, drawn Fractions // held: organic layer in the receiver; drawn: stripped off
 	boiledMol, boiledKg       float64
-	heatJ                     float64
+	condensedJ                float64 // taken up by the condenser
 	pushedM3                  float64 // carrier pushed out of a pre-filled receiver
 }
 
@@ -179,6 +182,7 @@ func (r *refluxing) start(feed Lot) error {
 		}
 		r.s.pot[inCarrier] -= fill
 		r.s.held[inCarrier] = fill
+		r.preFilled = r.s.held
 	}
 	var err error
 	if r.near[0], err = r.m.Boil(r.s.pot, r.eq.PressurePa, thermo.Boiling{}); err != nil {
@@ -192,11 +196,11 @@ func (r *refluxing) start(feed Lot) error {
 	if err := r.checkCoolant(); err != nil {
 		return fmt.Errorf("%w: %w", ErrNoCarrier, err)
 	}
-	fromK := feed.TempK
-	if fromK == 0 {
-		fromK = r.rig.RoomK
+	if r.fromK = math.Min(feed.TempK, r.startK); feed.TempK == 0 {
+		r.fromK = r.rig.RoomK
 	}
-	r.heatUpJ = r.sensible(r.s.pot, math.Min(fromK, r.startK), r.startK)
+	r.potK = r.startK
+	r.heatUpJ = r.sensible(r.s.pot, r.fromK, r.startK)
 	charge := hotCharge{r.heatUpJ, total(r.s.pot) * r.m.MolarVolume(whole, r.rig.RoomK), r.startK - r.rig.RoomK}
 	return checkHeater(r.rig.HeaterW, r.rig.HeatShare, r.rules.LongestHeatUpS, charge)
 }
@@ -218,13 +222,28 @@ func (r *refluxing) carrierM3() float64 {
 
 // sensible is the heat that warms amounts n from one temperature to another.
 func (r *refluxing) sensible(n Fractions, fromK, toK float64) (heatJ float64) {
-	mid := (fromK + toK) / 2
 	for i := range n {
-		if n[i] > 0 {
-			heatJ += n[i] * r.m.Pure[i].HeatCapacityJPerMolK.At(mid) * (toK - fromK)
+		if n[i] != 0 {
+			heatJ += n[i] * r.m.Pure[i].WarmJPerMol(fromK, toK)
 		}
 	}
 	return heatJ
+}
+
+// heatJ is what a pot that now boils at potK was given since it began to boil: what the
+// condenser took, the rise of the pot, and what was left behind is colder than the pot
+// was.
+//
+//	Q = sum V (L + h(T_pot) - h(T_rec)) + N h(T_pot) + N_gone h(T_rec), h(T_start) = 0
+func (r *refluxing) heatJ(s *state, potK float64) float64 {
+	gone := sum(sum(s.aqueous, s.held), s.drawn)
+	return s.condensedJ + r.sensible(s.pot, r.startK, potK) + r.sensible(sum(gone, scaled(r.preFilled, -1)), r.startK, r.eq.ReceiverK)
+}
+
+// usedJ is the same from the lot in the room on, heat-up included.
+func (r *refluxing) usedJ() float64 {
+	gone := sum(sum(r.s.aqueous, r.s.held), r.s.drawn)
+	return r.s.condensedJ + r.sensible(r.s.pot, r.fromK, r.potK) + r.sensible(sum(gone, scaled(r.preFilled, -1)), r.fromK, r.eq.ReceiverK)
 }
 
 func (r *refluxing) latent(y Fractions, tK float64) (heatJ float64) {

@@ -98,6 +98,16 @@ func carrierByFineSteps(t *testing.T, eq *steps.CarrierEquilibrium, feed steps.L
 		s, _ = m.Rewet(s, z, eq.ReceiverK, eq.Organic, 1)
 		return s
 	}
+	potK := 0.0
+	warm := func(b thermo.Boiling) (q float64) { // the pot's boiling point rises as it loses water and carrier
+		for i := range pot {
+			if potK > 0 {
+				q += pot[i] * m.Pure[i].HeatCapacityJPerMolK.At(b.TempK) * (b.TempK - potK)
+			}
+		}
+		potK = b.TempK
+		return q
+	}
 	var held thermo.Fractions
 	dn := (pot[0] + pot[1] + pot[2]) / float64(portions)
 	for { // fill the receiver
@@ -106,6 +116,7 @@ func carrierByFineSteps(t *testing.T, eq *steps.CarrierEquilibrium, feed steps.L
 			break
 		}
 		b, top := head()
+		heatJ += warm(b)
 		for i := range pot {
 			pot[i] -= dn / 4 * top.Y[i]
 			held[i] += dn / 4 * top.Y[i]
@@ -118,6 +129,7 @@ func carrierByFineSteps(t *testing.T, eq *steps.CarrierEquilibrium, feed steps.L
 	}
 	for pot[0]*m.Pure[0].MolarMassKgPerMol > plan.Goal*(pot[0]*m.Pure[0].MolarMassKgPerMol+pot[1]*m.Pure[1].MolarMassKgPerMol) {
 		b, top := head()
+		heatJ += warm(b)
 		s := flash(top.Y)
 		if !s.Exists {
 			t.Fatal("no second layer")
@@ -253,6 +265,11 @@ func TestCarrierBalances(t *testing.T) {
 		last := o.Course[len(o.Course)-1]
 		if !(o.Out.SolventKg > 0 && o.Out.WaterKg > 0 && o.Out.CarrierKg >= 0 && o.HoursTotal > 0 && last.PotK > 300) {
 			rt.Fatalf("out %+v after %g h, pot at %g K", o.Out, o.HoursTotal, last.PotK)
+		}
+		for i, p := range o.Course {
+			if i > 0 && p.Hours < o.Course[i-1].Hours-1e-9 { // less is rounding
+				rt.Fatalf("back in time: %g h after %g h", p.Hours, o.Course[i-1].Hours)
+			}
 		}
 		for _, l := range o.Losses {
 			if l.SolventKg < -1e-9*feed.SolventKg {

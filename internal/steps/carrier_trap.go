@@ -42,7 +42,7 @@ func (r *refluxing) reflux() error {
 	if goal > r.plan.Goal {
 		r.why = AtPractice
 	}
-	r.goal, r.trapFromJ, r.trapFromKg = goal, r.s.heatJ, r.massKg(r.s.pot)
+	r.goal, r.trapFromJ = goal, r.spentJ
 	if err := r.firstLayers(); err != nil {
 		return err
 	}
@@ -61,7 +61,7 @@ func (r *refluxing) reflux() error {
 		if l := r.m.Settle(c.split, r.eq.ReceiverK); l.Return != thermo.None && !r.fits(l.Return) {
 			return math.Inf(1) // the layers have changed places within a step
 		}
-		done := r.timeSpent(s)
+		done := r.timeSpent(r.heatJ(s, c.pot.TempK))
 		for i, l := range r.leeway(s, c) {
 			done = math.Max(done, 1-l/begin[i])
 		}
@@ -91,11 +91,11 @@ func (r *refluxing) briskness(s *state, c *condensed) float64 {
 }
 
 // timeSpent is the share of the longest time under the trap.
-func (r *refluxing) timeSpent(s *state) float64 {
+func (r *refluxing) timeSpent(spentJ float64) float64 {
 	if r.plan.LongestS <= 0 {
 		return 0
 	}
-	return (s.heatJ - r.trapFromJ) / r.netW() / r.plan.LongestS
+	return (spentJ - r.trapFromJ) / r.netW() / r.plan.LongestS
 }
 
 func (r *refluxing) efficiency(s *state) float64 {
@@ -166,7 +166,7 @@ func (r *refluxing) ended(s *state, c *condensed) (stop Stop, text string) {
 	if !c.split.Exists {
 		return AtOneLayer, fmt.Sprintf("no second layer: the condensate of a pot at %s is one liquid at %.0f °C", pot, receiver)
 	}
-	if r.timeSpent(s) > 1-1e-4 {
+	if r.timeSpent(r.spentJ) > 1-1e-4 {
 		return AtTime, fmt.Sprintf("time: %.3g h under the trap are over, with %s in the pot", r.plan.LongestS/secondsPerHour, pot)
 	}
 	switch r.nearest(s, c) {

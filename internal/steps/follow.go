@@ -58,11 +58,10 @@ func ForerunTable(eq *ForerunEquilibrium, rig ForerunRig, waters []float64) (nod
 		if d.at, err = d.sample(logit(d.x0)); err != nil || d.at.y <= d.x0*(1+1e-6) {
 			return nil, false
 		}
-		mid := (d.at.potK + rig.RoomK) / 2
 		n := &nodes[i]
 		n.Water = waters[i]
-		n.WarmWaterJ = d.m.Water.HeatCapacityJPerMolK.At(mid) * (d.at.potK - rig.RoomK)
-		n.WarmSolventJ = d.m.Solvent.HeatCapacityJPerMolK.At(mid) * (d.at.potK - rig.RoomK)
+		n.WarmWaterJ = d.m.Water.WarmJPerMol(rig.RoomK, d.at.potK)
+		n.WarmSolventJ = d.m.Solvent.WarmJPerMol(rig.RoomK, d.at.potK)
 		if i == len(waters)-1 {
 			continue
 		}

@@ -199,6 +199,7 @@ type drawing struct {
 	at           point
 	lnLeft       float64 // ln(moles in the pot/moles charged)
 	boilUpJ      float64
+	carriedJ     float64 // by the vapour that is drawn off, above the liquid at the temperature of the feed
 	why          Stop
 	firstY       float64 // water fraction of the first distillate
 	course       []Point
@@ -241,8 +242,7 @@ func (d *drawing) start(feed Lot) error {
 		return err
 	}
 	if d.startK > d.tempK {
-		mid := (d.startK + d.tempK) / 2
-		d.heatUpJ = (water*d.m.Water.HeatCapacityJPerMolK.At(mid) + solvent*d.m.Solvent.HeatCapacityJPerMolK.At(mid)) * (d.startK - d.tempK)
+		d.heatUpJ = d.m.WarmJ(water, solvent, d.tempK, d.startK)
 	}
 	charge := hotCharge{d.heatUpJ, d.mol0 * d.m.MolarVolume(d.x0, d.rig.RoomK), d.startK - d.rig.RoomK}
 	if err := checkHeater(d.rig.HeaterW, d.rig.HeatShare, d.rules.LongestHeatUpS, charge); err != nil {

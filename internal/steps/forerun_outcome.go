@@ -36,7 +36,8 @@ func (d *drawing) outcome(feed Lot) Outcome {
 	d.share(&o, n, (settleS+drawS)/secondsPerDay*d.rules.VapourLossPerDay)
 	o.account(d.m.Solvent, d.rig.RoomK)
 	o.Balance.HeatInJ = n * d.netW() * hotS
-	o.Balance.HeatUsedJ = n * (d.heatUpJ + d.boilUpJ + d.netW()*settleS)
+	water, solvent := d.pot()
+	o.Balance.HeatUsedJ = n * (d.m.WarmJ(water, solvent, d.tempK, d.at.potK) + d.carriedJ + d.netW()*settleS)
 	d.figures(&o, feed, heatUpS, settleS+drawS)
 	return o
 }

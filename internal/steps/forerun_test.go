@@ -386,6 +386,65 @@ func TestForerunBalances(t *testing.T) {
 	})
 }
 
+// The heat of drawing off, by equal small portions of vapour (explicit Euler) and the
+// balance as it stands: vapour made, and a pot that warms as it loses water. Another
+// method, same model.
+func TestForerunHeatAgainstFineSteps(t *testing.T) {
+	for _, c := range []struct {
+		solvent         string
+		kPa             float64
+		water, goal     float64
+		stages          int
+		leastWarmingPct float64 // of the heat, so that the case is one of a pot that warms
+	}{
+		{"n-n-dimethylformamide", 10, 0.05, 500e-6, 0, 3},
+		{"n-n-dimethylformamide", 10, 0.05, 500e-6, 3, 3},
+		{"tetrahydrofuran", 101.325, 0.02, 500e-6, 12, 0.1},
+		{"methanol", 101.325, 0.1, 0, 0, 0.5},
+	} {
+		m := mixture(t, c.solvent)
+		eq := boiler(t, m, c.kPa*1e3)
+		feed, r := litres(m, 10, c.water), still(c.stages)
+		o, err := steps.RunForerun(eq, feed, c.goal, r, drawingRules)
+		if err != nil {
+			t.Errorf("%+v: %v", c, err)
+			continue
+		}
+		water, solvent := feed.WaterKg/m.Water.MolarMassKgPerMol, feed.SolventKg/m.Solvent.MolarMassKgPerMol
+		target := (o.In.MassKg() - o.Figure("drawn off, as a share of the charge")/100*o.In.MassKg())
+		const portions = 20000
+		dn := (water + solvent) / portions
+		var latentJ, warmJ, potK float64
+		for water*m.Water.MolarMassKgPerMol+solvent*m.Solvent.MolarMassKgPerMol > target {
+			x := water / (water + solvent)
+			v, err := m.BubbleFrom(x, eq.PressurePa, 350)
+			if err != nil {
+				t.Fatal(err)
+			}
+			if potK > 0 {
+				warmJ += (water*m.Water.HeatCapacityJPerMolK.At(v.TempK) + solvent*m.Solvent.HeatCapacityJPerMolK.At(v.TempK)) * (v.TempK - potK)
+			}
+			potK = v.TempK
+			latentJ += dn * (1 + r.RefluxRatio) * (v.YWater*m.Water.HeatOfVaporizationJ.At(v.TempK) + (1-v.YWater)*m.Solvent.HeatOfVaporizationJ.At(v.TempK))
+			head := v
+			for range c.stages {
+				if head, err = m.BubbleFrom(head.YWater, eq.PressurePa, head.TempK); err != nil {
+					t.Fatal(err)
+				}
+			}
+			water, solvent = water-dn*head.YWater, solvent-dn*(1-head.YWater)
+		}
+		if share := 100 * warmJ / (latentJ + warmJ); share < c.leastWarmingPct {
+			t.Errorf("%+v: warming is %.2g %% of the heat", c, share)
+		}
+		settleS := 0.0
+		if c.stages > 0 {
+			settleS = drawingRules.SettleColumnS
+		}
+		near(t, c.solvent+": drawing off", o.Figure("drawing off, each charge"), ((latentJ+warmJ)/(r.HeaterW*r.HeatShare)+settleS)/3600, 0.005)
+	}
+}
+
 // A thousand times wider steps change the result by less than 0.5 %.
 func TestForerunStepControl(t *testing.T) {
 	for _, c := range []struct {

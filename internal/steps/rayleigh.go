@@ -54,7 +54,7 @@ func (d *drawing) march(end float64, over func() float64) error {
 		if last {
 			step = end - d.at.logit
 		}
-		from, lnLeft, boilUpJ, before := d.at, d.lnLeft, d.boilUpJ, over()
+		from, lnLeft, boilUpJ, carriedJ, before := d.at, d.lnLeft, d.boilUpJ, d.carriedJ, over()
 		off, err := d.advance(step)
 		if err != nil {
 			return err
@@ -63,11 +63,11 @@ func (d *drawing) march(end float64, over func() float64) error {
 		after := over()
 		switch {
 		case !(off <= d.allowedError) && !tiny:
-			d.at, d.lnLeft, d.boilUpJ = from, lnLeft, boilUpJ
+			d.at, d.lnLeft, d.boilUpJ, d.carriedJ = from, lnLeft, boilUpJ, carriedJ
 			step /= 2
 			continue
 		case after > eventAccuracy && !tiny:
-			d.at, d.lnLeft, d.boilUpJ = from, lnLeft, boilUpJ
+			d.at, d.lnLeft, d.boilUpJ, d.carriedJ = from, lnLeft, boilUpJ, carriedJ
 			step *= math.Max(0.02, math.Min(0.98, before/(before-after)))
 			continue
 		}
@@ -100,13 +100,25 @@ func (d *drawing) advance(step float64) (off float64, err error) {
 		0, s / 12 * (5*p[0].slope + 8*p[1].slope - p[2].slope),
 		half, half + s/12*(5*p[2].slope+8*p[3].slope-p[4].slope), whole,
 	}
-	var heat [5]float64 // J per unit of logit
-	for i := range heat {
-		heat[i] = -d.mol0 * math.Exp(d.lnLeft+lnN[i]) * p[i].slope * p[i].latent
+	var vapour [5]float64 // J per unit of logit, above the liquid in the pot at the start of the step
+	for i := range p {
+		drawn := -d.mol0 * math.Exp(d.lnLeft+lnN[i]) * p[i].slope
+		vapour[i] = drawn * (p[i].latent + d.m.WarmJ(p[i].y, 1-p[i].y, d.at.potK, p[i].potK))
 	}
-	d.boilUpJ += s / 3 * (heat[0] + 4*heat[1] + 2*heat[2] + 4*heat[3] + heat[4])
+	overJ := s / 3 * (vapour[0] + 4*vapour[1] + 2*vapour[2] + 4*vapour[3] + vapour[4])
+	water0, solvent0 := d.pot()
+	fromK := d.at.potK
 	d.at, d.lnLeft = p[4], d.lnLeft+whole
+	water, solvent := d.pot()
+	d.boilUpJ += overJ + d.m.WarmJ(water, solvent, fromK, d.at.potK) // the pot warms as it loses water
+	d.carriedJ += overJ + d.m.WarmJ(water0-water, solvent0-solvent, d.tempK, fromK)
 	return math.Abs(whole-coarse) / 15, nil
+}
+
+// pot is what is in it, mol.
+func (d *drawing) pot() (water, solvent float64) {
+	left := d.mol0 * math.Exp(d.lnLeft)
+	return left * d.at.x, left * (1 - d.at.x)
 }
 
 // strip draws water off until the pot holds goal.

@@ -165,7 +165,7 @@ type boiling struct {
 	charged          float64 // solvent at the start, mol
 	startK           float64
 	heatUpJ, boilUpJ float64
-	warmingJ         float64 // of the pot as its boiling point rises, part of boilUpJ
+	condensedJ       float64 // taken up by the condenser
 	potK             float64
 	boiledMol        float64
 	boiledKg         float64
@@ -196,8 +196,7 @@ func (b *boiling) start(feed Lot) error {
 	if err := b.checkCoolant(); err != nil {
 		return fmt.Errorf("%w: %w", ErrNoTrap, err)
 	}
-	mid := (b.startK + b.rig.RoomK) / 2
-	b.heatUpJ = (b.water*b.m.Water.HeatCapacityJPerMolK.At(mid) + b.solvent*b.m.Solvent.HeatCapacityJPerMolK.At(mid)) * (b.startK - b.rig.RoomK)
+	b.heatUpJ = b.m.WarmJ(b.water, b.solvent, b.rig.RoomK, b.startK)
 	charge := hotCharge{b.heatUpJ, (b.water + b.solvent) * b.m.MolarVolume(x, b.rig.RoomK), b.startK - b.rig.RoomK}
 	return checkHeater(b.rig.HeaterW, b.rig.HeatShare, b.rules.LongestHeatUpS, charge)
 }
@@ -233,11 +232,21 @@ func (b *boiling) latent(v thermo.Vapour) float64 {
 	return v.YWater*b.m.Water.HeatOfVaporizationJ.At(v.TempK) + (1-v.YWater)*b.m.Solvent.HeatOfVaporizationJ.At(v.TempK)
 }
 
-// reheat is the heat that brings one mole of the returned layer back to the boil.
-func (b *boiling) reheat(tK float64) float64 {
-	mid := (tK + b.eq.ReceiverK) / 2
-	x := b.eq.Floor.Layers.XOrganic
-	return (x*b.m.Water.HeatCapacityJPerMolK.At(mid) + (1-x)*b.m.Solvent.HeatCapacityJPerMolK.At(mid)) * (tK - b.eq.ReceiverK)
+// condensing is what a mole of vapour gives off as it becomes a liquid at the
+// receiver's temperature, J/mol.
+func (b *boiling) condensing(v thermo.Vapour) float64 {
+	return b.latent(v) + b.m.WarmJ(v.YWater, 1-v.YWater, b.eq.ReceiverK, v.TempK)
+}
+
+// boil books the heat of a stretch in which the pot lost water and solvent (mol), all
+// of it left behind in the receiver, and came to boil at tK: what the condenser took,
+// the rise of what is in the pot, and what was left behind is colder than the pot was.
+//
+//	Q = sum V (L + h(T_pot) - h(T_rec)) + d(N h(T_pot)) + dN_gone h(T_rec)
+func (b *boiling) boil(condensedJ, water, solvent, tK float64) {
+	b.condensedJ += condensedJ
+	b.boilUpJ += condensedJ + b.m.WarmJ(b.water, b.solvent, b.potK, tK) + b.m.WarmJ(water, solvent, b.potK, b.eq.ReceiverK)
+	b.potK = tK
 }
 
 func (b *boiling) molarMass(yWater float64) float64 {
@@ -288,7 +297,7 @@ func (b *boiling) fill() error {
 		if v, err = b.vapour(b.fraction()); err != nil {
 			return err
 		}
-		b.warm(v.TempK)
+		b.boil(step*b.condensing(mid), step*mid.YWater, step*(1-mid.YWater), v.TempK)
 		left -= step
 	}
 	b.note()
@@ -301,7 +310,6 @@ func (b *boiling) countUnreturned(step float64, v thermo.Vapour) {
 	xAq := b.eq.Floor.Layers.XAqueous
 	b.boiledMol += step
 	b.boiledKg += step * b.molarMass(v.YWater)
-	b.boilUpJ += step * b.latent(v)
 	b.aqueousMol += step * aqueous
 	b.heldWaterMol += step * (v.YWater - aqueous*xAq)
 	b.heldSolventMol += step * (1 - v.YWater - aqueous*(1-xAq))
@@ -384,36 +392,23 @@ func (b *boiling) segment(x float64) error {
 				quantity.FormatWater(b.m.MassFraction(water/(water+rest+solventPerWater*water))), b.eq.ReceiverK-273.15)
 		}
 		mol = water / (l * xAq) / efficiency
-		return mol, mol * b.molarMass(v.YWater), mol * (b.latent(v) + (1-l)*b.reheat(v.TempK))
+		return mol, mol * b.molarMass(v.YWater), mol * b.condensing(v)
 	}
-	mol, kg, joule := integrate3(perLnWater, math.Log(water1), math.Log(water0))
+	mol, kg, condensedJ := integrate3(perLnWater, math.Log(water1), math.Log(water0))
 	if failed != nil {
 		return failed
 	}
 	b.boiledMol += mol
 	b.boiledKg += kg
-	b.boilUpJ += joule
 	b.aqueousMol += (water0 - water1) / xAq
 	b.water, b.solvent = water1, rest+solventPerWater*water1
 	v, err := b.vapour(b.fraction())
 	if err != nil {
 		return err
 	}
-	b.water, b.solvent = (water0+water1)/2, (solvent0+b.solvent)/2 // it warms while it shrinks
-	b.warm(v.TempK)
-	b.water, b.solvent = water1, rest+solventPerWater*water1
+	b.boil(condensedJ, water0-water1, solvent0-b.solvent, v.TempK)
 	b.note()
 	return nil
-}
-
-// warm books the sensible heat of a pot whose boiling point rises to tK as it
-// loses water.
-func (b *boiling) warm(tK float64) {
-	mid := (b.potK + tK) / 2
-	heat := (b.water*b.m.Water.HeatCapacityJPerMolK.At(mid) + b.solvent*b.m.Solvent.HeatCapacityJPerMolK.At(mid)) * (tK - b.potK)
-	b.warmingJ += heat
-	b.boilUpJ += heat
-	b.potK = tK
 }
 
 // integrate3 integrates three quantities at once by Gauss-Legendre quadrature.

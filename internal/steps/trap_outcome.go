@@ -55,7 +55,7 @@ func (b *boiling) outcome(feed Lot, goal float64, why Stop) Outcome {
 	o.account(b.m.Solvent, b.rig.RoomK)
 	o.Balance.WaterRemovedKg = n * (lost.aqueousWaterKg + lost.heldWaterKg + lost.vapourWaterKg - regainedKg)
 	o.Balance.HeatInJ = n * b.netW() * hotS
-	o.Balance.HeatUsedJ = n * (b.heatUpJ + b.boilUpJ + b.netW()*(refluxS-boilS))
+	o.Balance.HeatUsedJ = n * (b.condensedJ + b.netW()*(refluxS-boilS) + b.storedJ(feed, n))
 	o.Figures = []Figure{
 		{"still charges", "", n},
 		{"boiling temperature at the start", "°C", b.startK - 273.15},
@@ -71,6 +71,13 @@ func (b *boiling) outcome(feed Lot, goal float64, why Stop) Outcome {
 	b.nothingGained(&o)
 	o.Warnings = append(o.Warnings, oftenDrained(drainings, "let free water settle first, or take a larger receiver")...)
 	return o
+}
+
+// storedJ is what the liquids of a charge hold more than the lot did in the room: the
+// boiling pot, and what is left in the receiver.
+func (b *boiling) storedJ(feed Lot, charges float64) float64 {
+	water := feed.WaterKg/charges/b.m.Water.MolarMassKgPerMol - b.water
+	return b.m.WarmJ(b.water, b.solvent, b.rig.RoomK, b.potK) + b.m.WarmJ(water, b.charged-b.solvent, b.rig.RoomK, b.eq.ReceiverK)
 }
 
 // nothingGained says so of a lot that no trap makes drier.

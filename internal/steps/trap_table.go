@@ -41,10 +41,9 @@ func TrapTable(eq *TrapEquilibrium, rules TrapRules, roomK float64, waters []flo
 		if err != nil {
 			return nil, err
 		}
-		mid := (v.TempK + roomK) / 2
 		n.Water, n.YWater, n.LatentJ, n.PotK = waters[i], v.YWater, b.latent(v), v.TempK
-		n.WarmWaterJ = b.m.Water.HeatCapacityJPerMolK.At(mid) * (v.TempK - roomK)
-		n.WarmSolventJ = b.m.Solvent.HeatCapacityJPerMolK.At(mid) * (v.TempK - roomK)
+		n.WarmWaterJ = b.m.Water.WarmJPerMol(roomK, v.TempK)
+		n.WarmSolventJ = b.m.Solvent.WarmJPerMol(roomK, v.TempK)
 		if i == len(waters)-1 {
 			continue
 		}

@@ -3,6 +3,7 @@ package steps_test
 import (
 	"errors"
 	"math"
+	"slices"
 	"strings"
 	"testing"
 
@@ -201,31 +202,49 @@ func TestTrapRefusals(t *testing.T) {
 	}
 }
 
-// Water, solvent and heat close, whatever the lot.
+// Water, solvent and heat close, whatever the lot, the still and the receiver, for every
+// solvent of the catalog that a trap can dry.
 func TestTrapBalances(t *testing.T) {
-	returns := map[string]string{"toluene": "light", "cyclohexane": "light", "dichloromethane": "heavy", "ethyl-acetate": "light"}
-	rapid.Check(t, func(rt *rapid.T) {
-		solvent := rapid.SampledFrom([]string{"toluene", "cyclohexane", "dichloromethane", "ethyl-acetate"}).Draw(rt, "solvent")
-		receiver := rapid.Float64Range(7.5, 30).Draw(rt, "receiver")
-		eq, err := steps.NewTrapEquilibrium(mixture(t, solvent), receiver+273.15, rapid.Float64Range(90e3, 110e3).Draw(rt, "P"))
-		if err != nil {
-			rt.Fatal(err)
+	var solvents []string
+	for key, s := range shelf(t).Solvents {
+		if s.Water != nil {
+			solvents = append(solvents, key)
 		}
-		water := math.Exp(rapid.Float64Range(math.Log(20e-6), math.Log(0.2)).Draw(rt, "ln w"))
-		goal := water * rapid.Float64Range(0.001, 1).Draw(rt, "goal")
-		r := rig(returns[solvent])
-		r.Charges = rapid.IntRange(1, 4).Draw(rt, "charges")
-		feed := litres(eq.Mixture, rapid.Float64Range(0.5, 60).Draw(rt, "litres"), water)
-		o, err := steps.RunTrap(eq, feed, goal, r, rules)
-		if errors.Is(err, steps.ErrNoTrap) {
+	}
+	slices.Sort(solvents)
+	ran := map[string]bool{}
+	rapid.Check(t, func(rt *rapid.T) {
+		solvent := rapid.SampledFrom(solvents).Draw(rt, "solvent")
+		receiver := rapid.Float64Range(1, 40).Draw(rt, "receiver")
+		m := mixture(t, solvent)
+		m.Limits = shelf(t).Solvents[solvent].Water.Limits
+		eq, err := steps.NewTrapEquilibrium(m, receiver+273.15, rapid.Float64Range(5e3, 110e3).Draw(rt, "P"))
+		if refusal(err) {
 			return
 		}
 		if err != nil {
 			rt.Fatal(err)
 		}
+		water := math.Exp(rapid.Float64Range(math.Log(1e-6), math.Log(0.5)).Draw(rt, "ln w"))
+		goal := water * rapid.Float64Range(0.001, 1).Draw(rt, "goal")
+		r := rig("either")
+		r.Charges = rapid.IntRange(1, 4).Draw(rt, "charges")
+		r.HeaterW = rapid.Float64Range(200, 4000).Draw(rt, "W")
+		r.FillVolumeM3 = rapid.Float64Range(1e-6, 300e-6).Draw(rt, "fill")
+		r.UsableVolumeM3 = rapid.Float64Range(5e-6, 300e-6).Draw(rt, "usable")
+		feed := litres(eq.Mixture, rapid.Float64Range(0.5, 60).Draw(rt, "litres"), water)
+		o, err := steps.RunTrap(eq, feed, goal, r, rules)
+		if errors.Is(err, steps.ErrNoTrap) || errors.Is(err, steps.ErrHeater) {
+			return
+		}
+		if err != nil {
+			rt.Fatal(err)
+		}
+		ran[solvent] = true
 		b := o.Balance
 		closes(rt, "water", b.WaterInKg, b.WaterOutKg+b.WaterRemovedKg)
 		closes(rt, "solvent", b.SolventInKg, b.SolventOutKg+b.SolventRemovedKg)
+		closes(rt, "heat", b.HeatInJ, b.HeatUsedJ)
 		// a pot wetter than its azeotrope grows wetter while the receiver fills
 		if eq.Mixture.MoleFraction(water) < eq.Azeotrope.YWater && o.Out.Water() > water*(1+1e-9) {
 			rt.Fatalf("wetter out (%g) than in (%g)", o.Out.Water(), water)
@@ -237,7 +256,15 @@ func TestTrapBalances(t *testing.T) {
 		if o.Out.Water() < math.Min(water, o.Floor)*(1-1e-9) {
 			rt.Fatalf("below the floor: %g < %g", o.Out.Water(), o.Floor)
 		}
+		for i, p := range o.Course {
+			if i > 0 && p.Hours < o.Course[i-1].Hours-1e-9 { // less is rounding
+				rt.Fatalf("back in time: %g h after %g h", p.Hours, o.Course[i-1].Hours)
+			}
+		}
 	})
+	if len(ran) < 10 {
+		t.Errorf("only %d solvents were run", len(ran))
+	}
 }
 
 // timeGoesOn holds a course to a clock: no point of it is earlier than the one before.

@@ -142,6 +142,12 @@ func (m *Mixture) Activity(water, tK float64) float64 {
 	return x * math.Exp(lnW)
 }
 
+// WarmJ is the heat that takes so many moles of water and solvent from one
+// temperature to another.
+func (m *Mixture) WarmJ(water, solvent, fromK, toK float64) float64 {
+	return water*m.Water.WarmJPerMol(fromK, toK) + solvent*m.Solvent.WarmJPerMol(fromK, toK)
+}
+
 // MolarVolume of a liquid in m3/mol, from additive volumes of the pure liquids.
 func (m *Mixture) MolarVolume(xWater, tK float64) float64 {
 	return xWater*m.Water.MolarMassKgPerMol/m.Water.DensityKgPerM3.At(tK) +
