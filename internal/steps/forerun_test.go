@@ -377,6 +377,7 @@ func TestForerunBalances(t *testing.T) {
 		closes(rt, "water", b.WaterInKg, b.WaterOutKg+b.WaterRemovedKg)
 		closes(rt, "solvent", b.SolventInKg, b.SolventOutKg+b.SolventRemovedKg)
 		closes(rt, "heat", b.HeatInJ, b.HeatUsedJ)
+		timeGoesOn(rt, o)
 		if left := o.Course[len(o.Course)-1].LostShare; !(left >= 0 && left <= 1) {
 			rt.Fatalf("lost share %g", left)
 		}

@@ -70,6 +70,14 @@ func TestRisingRoot(t *testing.T) {
 			t.Errorf("from nearby: %.9g K after %d evaluations, %v", got, calls, ok)
 		}
 	}
+	for _, rootK := range []float64{260, 350, 430} { // a guess as close as the last boiling point of a pot: its slope is another one
+		for _, offK := range []float64{1e-3, 3e-6, 9e-7, -9e-7, 2e-8, 0} {
+			got, ok := risingRoot(func(tK float64) float64 { return 5000/rootK - 5000/tK }, rootK+offK)
+			if !ok || math.Abs(got-rootK) > 1e-8 {
+				t.Errorf("from %g K beside it: %.12g K, %v; want %g", offK, got, ok, rootK)
+			}
+		}
+	}
 	if _, ok := risingRoot(func(tK float64) float64 { return 300 - tK + math.Sin(tK) }, 350); ok {
 		t.Error("a root of a falling function")
 	}

@@ -27,10 +27,16 @@ func (p *Pure) Called() string {
 }
 
 // WarmJPerMol is the heat that takes a mole of the liquid from one temperature to
-// another: the integral of its heat capacity by Boole's rule, exact for polynomials
-// up to the fifth power of T, so that what is warmed in steps takes what it takes at
-// once.
+// another. It is a difference of contents, so that what is warmed in steps takes what
+// it takes at once.
 func (p *Pure) WarmJPerMol(fromK, toK float64) float64 {
-	at := func(share float64) float64 { return p.HeatCapacityJPerMolK.At(fromK + share*(toK-fromK)) }
-	return (7*at(0) + 32*at(0.25) + 12*at(0.5) + 32*at(0.75) + 7*at(1)) / 90 * (toK - fromK)
+	return p.contentJPerMol(toK) - p.contentJPerMol(fromK)
+}
+
+// contentJPerMol is the heat content of the liquid above 298.15 K: the integral of its
+// heat capacity by Boole's rule, exact for polynomials up to the fifth power of T.
+func (p *Pure) contentJPerMol(tK float64) float64 {
+	const fromK = 298.15
+	at := func(share float64) float64 { return p.HeatCapacityJPerMolK.At(fromK + share*(tK-fromK)) }
+	return (7*at(0) + 32*at(0.25) + 12*at(0.5) + 32*at(0.75) + 7*at(1)) / 90 * (tK - fromK)
 }

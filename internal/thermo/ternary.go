@@ -139,9 +139,12 @@ func (m *Ternary) bubble(x *Fractions, pressurePa, guessK float64) (tK float64, 
 }
 
 // risingRoot finds the root of a function that rises with temperature by about
-// a few per cent per kelvin, by the secant method from a guess (0: none).
+// a few per cent per kelvin, by the secant method from a guess (0: none). The first
+// step rests on a slope that is only typical: it is the last one only where it is
+// shorter by far.
 func risingRoot(f func(float64) float64, guessK float64) (tK float64, ok bool) {
 	const typicalSlope, longestStepK = 0.035, 40.0
+	lastStepK := 1e-8
 	t := guessK
 	if !(t > 0) {
 		t = 350
@@ -149,20 +152,21 @@ func risingRoot(f func(float64) float64, guessK float64) (tK float64, ok bool) {
 	value := f(t)
 	slope := typicalSlope
 	for range 30 {
-		step := math.Max(-longestStepK, math.Min(longestStepK, -value/slope))
-		t += step
-		if math.Abs(step) < 1e-6 {
+		if math.Abs(value) < 1e-12 {
 			return t, true
 		}
+		step := math.Max(-longestStepK, math.Min(longestStepK, -value/slope))
+		t += step
+		if math.Abs(step) < lastStepK {
+			return t, true
+		}
+		lastStepK = 1e-6
 		next := f(t)
 		slope = (next - value) / step
 		if !(slope > 0) {
 			return math.NaN(), false
 		}
 		value = next
-		if math.Abs(value) < 1e-12 {
-			return t, true
-		}
 	}
 	return math.NaN(), false
 }
