@@ -260,10 +260,12 @@ func (b *boiling) aqueousShare(yWater float64) float64 {
 }
 
 // A step of the filling takes at most this share of the water in the pot, and
-// at most this share of the fill.
+// at most this share of the fill. From 50 % of water down to where it is gone that
+// comes to less than 500 steps.
 const (
 	fillWaterShare = 0.05
 	fillShare      = 1.0 / 24
+	mostFillSteps  = 2000
 )
 
 // fill boils the receiver full; nothing returns (Rayleigh, dN_i/dn = -y_i, by
@@ -278,7 +280,12 @@ func (b *boiling) fill() error {
 	if total >= b.solvent {
 		return fmt.Errorf("%w: the receiver holds %.3g L and would take the whole charge", ErrNoTrap, 1e3*b.rig.FillVolumeM3)
 	}
-	for left := total; left > 0; {
+	left := total
+	for n := 0; left > 0; n++ {
+		if n == mostFillSteps {
+			return fmt.Errorf("%w: the filling of the receiver with %s, %d steps, %.3g of it to go, %.3g mg/kg of water in the pot", ErrUnsolved,
+				b.m.Solvent.Called(), n, left/total, b.m.MassFraction(b.fraction())*mgPerKg)
+		}
 		step := math.Min(left, fillShare*total)
 		if v.YWater > 0 {
 			step = math.Min(step, fillWaterShare*b.water/v.YWater)
@@ -294,10 +301,16 @@ func (b *boiling) fill() error {
 		b.water -= step * mid.YWater
 		b.solvent -= step * (1 - mid.YWater)
 		b.countUnreturned(step, mid)
+		lost := step * mid.YWater
+		if b.fraction() < goneShare { // the trace goes over too
+			b.heldWaterMol += b.water
+			lost += b.water
+			b.water = 0
+		}
 		if v, err = b.vapour(b.fraction()); err != nil {
 			return err
 		}
-		b.boil(step*b.condensing(mid), step*mid.YWater, step*(1-mid.YWater), v.TempK)
+		b.boil(step*b.condensing(mid), lost, step*(1-mid.YWater), v.TempK)
 		left -= step
 	}
 	b.note()

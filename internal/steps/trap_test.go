@@ -2,10 +2,12 @@ package steps_test
 
 import (
 	"errors"
+	"fmt"
 	"math"
 	"slices"
 	"strings"
 	"testing"
+	"time"
 
 	"pgregory.net/rapid"
 
@@ -299,6 +301,40 @@ func TestAWetPotMayNotSplit(t *testing.T) {
 func closes(t *rapid.T, what string, in, out float64) {
 	if math.Abs(in-out) > 1e-10*math.Abs(in) {
 		t.Fatalf("%s: %g in, %g accounted for", what, in, out)
+	}
+}
+
+// A receiver that holds nearly the whole charge takes all the water of a dry pot on the
+// way: by a pot of constant K the last tenth of its vapour alone takes exp(-2.3 K), and K
+// is in the thousands. The filling comes to an end and keeps its balances.
+func TestAReceiverNearlyAsLargeAsTheCharge(t *testing.T) {
+	for _, solvent := range []string{"n-heptane", "n-octane", "cyclohexane", "toluene"} {
+		eq := equilibrium(t, solvent, 25)
+		m := eq.Mixture
+		r := rig("either")
+		feed := litres(m, 1, 1e-6)
+		r.FillVolumeM3 = 0.999 * feed.SolventKg / m.Solvent.MolarMassKgPerMol * m.MolarVolume(0, eq.ReceiverK)
+		ended := make(chan error, 1)
+		go func() {
+			o, err := steps.RunTrap(eq, feed, 1e-7, r, rules)
+			if err == nil && math.Abs(o.Balance.WaterInKg-o.Balance.WaterOutKg-o.Balance.WaterRemovedKg) > 1e-10*feed.WaterKg {
+				err = fmt.Errorf("%+v", o.Balance)
+			}
+			if err == nil {
+				if last := o.Course[len(o.Course)-1]; !(last.LostShare > 0.99 && last.Water < 1e-9) {
+					err = fmt.Errorf("%+v", last)
+				}
+			}
+			ended <- err
+		}()
+		select {
+		case err := <-ended:
+			if err != nil {
+				t.Errorf("%s: %v", solvent, err)
+			}
+		case <-time.After(20 * time.Second): // it takes milliseconds
+			t.Fatalf("%s: the filling does not end", solvent)
+		}
 	}
 }
 
