@@ -96,7 +96,7 @@ func (r refusal) Unwrap() error { return r.error }
 // refused marks the errors that say that a step does not work on this lot.
 func refused(err error) error {
 	for _, known := range []error{steps.ErrNoTrap, steps.ErrNothingSettles, steps.ErrWetSieve, steps.ErrUnfit, steps.ErrNoSense,
-		steps.ErrNoForerun, steps.ErrNoColumn, steps.ErrSaltTooWarm, steps.ErrPreDry, steps.ErrHeater, steps.ErrBoilUp, steps.ErrNoCarrier} {
+		steps.ErrNoForerun, steps.ErrNoColumn, steps.ErrSaltTooWarm, steps.ErrPreDry, steps.ErrNoReactive, steps.ErrHeater, steps.ErrBoilUp, steps.ErrNoCarrier} {
 		if errors.Is(err, known) {
 			return refusal{err}
 		}

@@ -154,5 +154,6 @@ func (c *Case) reactiveRig(key string) steps.ReactiveRig {
 		RefluxS: c.practice("reactive-reflux"), Surplus: c.Catalog.Agents[key].Reaction.Surplus.SI, LeastKgPerM3: c.practice("reactive-least"),
 		HeelShare: c.practice("forerun-heel"), Charges: charges, SetUpS: c.practice("reactive-attended"),
 		AttendedShare: c.practice("trap-attended-share"), CoolingFlowM3S: c.practice("cooling-flow"), VapourLossPerDay: c.practice("vapour-loss-per-day"),
+		LongestHeatUpS: c.practice("heat-up-maximum"),
 	}
 }

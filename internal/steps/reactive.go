@@ -62,6 +62,7 @@ type ReactiveRig struct {
 	AttendedShare    float64 // of the hours at the heater
 	CoolingFlowM3S   float64
 	VapourLossPerDay float64 // share of the charge
+	LongestHeatUpS   float64 // 0: no limit
 }
 
 // leastHeel is never boiled away: residues of peroxides and surplus agent stay
@@ -70,6 +71,9 @@ const leastHeel = 0.10
 
 // ErrPreDry means that a lot is too wet for a reactive agent.
 var ErrPreDry = errors.New("too wet for a reactive agent")
+
+// ErrNoReactive means that a lot cannot be boiled over an agent; the error says why.
+var ErrNoReactive = errors.New("boiling over an agent does not work here")
 
 // HydrogenM3PerKg is the hydrogen from a kilogram of agent that reacts in full,
 // as an ideal gas at tK and 101.325 kPa.

@@ -32,6 +32,9 @@ func runReactive(m *thermo.Mixture, feed Lot, agent ReactiveAgent, found Measure
 	}
 	d := distilling{m: m, rig: rig, feed: feed, boilK: boilK, bound: c.boundSolventKg}
 	d.heat()
+	if err := d.boils(); err != nil {
+		return Outcome{}, err
+	}
 	o := d.outcome(left.water, c, agent.wasteClass())
 	o.Agent = agent.Key
 	o.Floor = left.water
@@ -75,6 +78,17 @@ func (d *distilling) heat() {
 	d.heaterJ = d.rig.HeaterW * d.heatedS
 	d.vapourKg = d.feed.SolventKg * d.rig.VapourLossPerDay * (d.refluxS + d.distilS) / charges / secondsPerDay
 	d.vapourKg = math.Min(d.vapourKg, d.feed.SolventKg-d.bound-d.heelKg)
+}
+
+// boils refuses a pot that boils in the room, and a heater that cannot keep it at the
+// boil or gives more vapour than a condenser takes up.
+func (d *distilling) boils() error {
+	if err := boilsInTheRoom(d.m.Solvent.Called(), d.boilK, d.rig.RoomK, d.rig.PressurePa, d.m.Solvent.VapourPressurePa.At); err != nil {
+		return fmt.Errorf("%w: %w", ErrNoReactive, err)
+	}
+	charges := float64(d.rig.Charges)
+	return checkHeater(d.rig.HeaterW, d.rig.HeatShare, d.rig.LongestHeatUpS,
+		hotCharge{d.heatUpJ / charges, LotVolume(d.m, d.feed, d.rig.RoomK) / charges, d.boilK - d.rig.RoomK})
 }
 
 func (d *distilling) outcome(water float64, c charge, class WasteClass) Outcome {
