@@ -23,10 +23,11 @@ func afterwards(k *routes.Case, r *Route) []string {
 			add("the charge of %s used again as it is, batch after batch: %s", k.Catalog.Agents[s.Agent].Name, life.Verdict)
 		}
 	}
+	const aDropM3 = 0.05e-6 // no one stops short of the last drop
 	store := k.Store(&r.Run)
 	if use, err := store.UseBy(k.Lot.Target); err == nil && r.Run.Meets {
 		switch {
-		case use.LeastVolumeM3 > 0 && !math.IsInf(use.LeastVolumeM3, 0):
+		case use.LeastVolumeM3 > aDropM3 && !math.IsInf(use.LeastVolumeM3, 0):
 			add("kept under room air, the first litre drawn adds %s; draw dry gas in, or stop at %s left: from there it passes the target",
 				quantity.FormatWater(store.PerLitre()), quantity.FormatVolume(use.LeastVolumeM3))
 		case store.AirWaterKgPerM3 > 0:
