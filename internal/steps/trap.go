@@ -280,6 +280,9 @@ func (b *boiling) fill() error {
 	if total >= b.solvent {
 		return fmt.Errorf("%w: the receiver holds %.3g L and would take the whole charge", ErrNoTrap, 1e3*b.rig.FillVolumeM3)
 	}
+	if total > (1-leastHeel)*(b.water+b.solvent) {
+		return fmt.Errorf("%w: the receiver holds %.3g L before anything returns, which would leave less than %.0f %% of the charge in the pot", ErrNoTrap, 1e3*b.rig.FillVolumeM3, 100*leastHeel)
+	}
 	left := total
 	for n := 0; left > 0; n++ {
 		if n == mostFillSteps {
