@@ -81,13 +81,16 @@ func (c *Case) receiver(trap *steps.TrapEquilibrium, key string) (*catalog.Appar
 	return nil, fmt.Errorf("%s, and no receiver of the catalog returns that layer", needs)
 }
 
-// Receivers are the keys of the receivers that a trap on this lot may have. What
-// is owned is used before another is bought.
-func (c *Case) Receivers() (keys []string) {
-	if c.Trap == nil {
-		return nil
+// Receivers are the keys of the receivers that a trap on this lot may have, with a
+// carrier or without (""). What is owned is used before another is bought.
+func (c *Case) Receivers(carrier string) (keys []string) {
+	var all []*catalog.Apparatus
+	switch {
+	case carrier != "":
+		all = c.receiversFor(string(c.carrierKnown(carrier).returns))
+	case c.Trap != nil:
+		all = c.receivers(c.Trap)
 	}
-	all := c.receivers(c.Trap)
 	for _, a := range all {
 		if c.owned(a.Key) || !c.owned(all[0].Key) {
 			keys = append(keys, a.Key)

@@ -73,13 +73,14 @@ func (t *Tuner) axes(r routes.Route, stands []stand) (all []axis) {
 		count[stage.Kind]++
 		switch stage.Kind {
 		case steps.Trap:
-			if stage.Carrier != "" { // the receiver that fits, as cold as can be: each run takes its time
+			if stage.Carrier != "" { // as cold as can be: each run takes its time
 				dose := carriers
 				carriers++
 				all = append(all, oneOf(routes.CarrierDoses, func(s *routes.Settings, d float64) { s.CarrierDose[dose] = d }))
+				all = append(all, later(oneOf(t.receivers(stage.Carrier), func(s *routes.Settings, key string) { s.Receiver[k] = key })))
 				continue
 			}
-			all = append(all, later(oneOf(t.receivers(), func(s *routes.Settings, key string) { s.Receiver[k] = key })))
+			all = append(all, later(oneOf(t.receivers(""), func(s *routes.Settings, key string) { s.Receiver[k] = key })))
 			all = append(all, later(oneOf(t.Case.ReceiverTemperatures(), func(s *routes.Settings, c float64) { s.ReceiverC[k] = c })))
 		case steps.Forerun:
 			all = append(all, oneOf(t.Case.ColumnStages(), func(s *routes.Settings, n int) { s.Stages[k] = n }))
@@ -102,11 +103,11 @@ func (t *Tuner) axes(r routes.Route, stands []stand) (all []axis) {
 	return all
 }
 
-func (t *Tuner) receivers() []string {
+func (t *Tuner) receivers(carrier string) []string {
 	if t.Receiver != "" {
 		return []string{t.Receiver}
 	}
-	return t.Case.Receivers()
+	return t.Case.Receivers(carrier)
 }
 
 func oneOf[T any](values []T, set func(*routes.Settings, T)) axis {
