@@ -26,6 +26,7 @@ var floors = []string{
 	"parch/internal/steps",
 	"parch/internal/assay",
 	"parch/internal/job",
+	"parch/internal/history",
 	"parch/internal/listing",
 	"parch/internal/mixture",
 	"parch/catalog",

@@ -88,6 +88,10 @@ func (l *Lot) residual() spread.Input {
 			return spread.Around(name, v.Low*scale, lot.ResidualLoading, v.High*scale, h.Text+": "+fmt.Sprintf("%.2g to %.2g g/100 g", 100*v.Low*scale, 100*v.High*scale))
 		}
 	}
+	if b := lot.ResidualBand; b != nil {
+		low, high := b.Low*lot.ResidualLoading, b.High*lot.ResidualLoading
+		return spread.Around(name, low, lot.ResidualLoading, high, fmt.Sprintf("%s, with assumed handling and standing: %.2g to %.2g g/100 g", lot.SieveTreatment, 100*low, 100*high))
+	}
 	v := l.Case.Catalog.Doubts[catalog.DoubtResidual]
 	return spread.Around(name, lot.ResidualLoading/v.SI, lot.ResidualLoading, lot.ResidualLoading*v.SI, why(v, "its history, a factor of "+v.Text))
 }

@@ -64,7 +64,7 @@ func TestBadValues(t *testing.T) {
 		{"15 mg/kg", "15 mg/kg\n  batches: 0 /yr", `job.yaml:6: lots[0].batches: "0 /yr" is not possible here; allowed: 0.1 /yr to 10000 /yr`},
 		{"15 mg/kg", "15 mg/kg\n  heater: 2 MW", `job.yaml:6: lots[0].heater: "2 MW": "MW" is not a unit known here; allowed: kW, W`},
 		{"15 mg/kg", "15 mg/kg\n  sieve history: 400 °C", `job.yaml:6: lots[0].sieve history: "400 °C" is not possible here; allowed: 150 °C to 300 °C, where there are data`},
-		{"15 mg/kg", "15 mg/kg\n  sieve history: sunny", `job.yaml:6: lots[0].sieve history: "sunny" is not a history known here; give the temperature of the activation ("300 °C"), what it holds ("residual 1.5 g/100 g") or one of: furnace-300-closed, furnace-300, oven-150, oven-200, oven-250, opened-tin`},
+		{"15 mg/kg", "15 mg/kg\n  sieve history: sunny", `job.yaml:6: lots[0].sieve history: "sunny" is not a history known here; write the oven's temperature ("300 C", "300 C closed hot", "250 C, closed hot, 30 d", "200 C, vacuum 1 hPa"), what the sieve holds ("residual 1.5 g/100 g") or one of: furnace-300-closed, furnace-300, oven-150, oven-200, oven-250, opened-tin`},
 		{"15 mg/kg", "15 mg/kg\n  peroxide: {reading: 0 mg/L}", `job.yaml:6: lots[0].peroxide: "date" is missing`},
 		{"15 mg/kg", "15 mg/kg\n  peroxide: {reading: 0 ppm, date: 2026-11-28}", `job.yaml:6: lots[0].peroxide.reading: "0 ppm": "ppm" is not clear for a solution; test strips read mg/L: write "mg/L"; allowed: g/L, mg/L, kg/m3, g/mL, mg/mL, mg/m3, g/m3, % m/v`},
 		{"15 mg/kg", "15 mg/kg\n  peroxide: {reading: 0 mg/L, date: 28.11.2026}", `job.yaml:6: lots[0].peroxide.date: "28.11.2026" is not a date; write it like "2026-10-01"`},

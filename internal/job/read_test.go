@@ -86,7 +86,7 @@ func TestEveryKey(t *testing.T) {
 			"job.yaml:5: catalog[0]: not read here: the built-in catalog is used",
 			`job.yaml:8: prices[1].water: "ppm" read as mg/kg (by mass)`,
 			"job.yaml:16: accept: sodium with dichloromethane is dangerous and stays excluded: can explode",
-			"job.yaml:21: lots[0].sieve history: residual water of the sieve, 2.25 g/100 g, is interpolated between 250 °C and 300 °C",
+			"job.yaml:21: lots[0].sieve history: what the sieve still holds, 2.25 g/100 g, is interpolated between the catalog's activation temperatures",
 			`job.yaml:22: lots[1].water: "%" read as per cent by mass (% m/m)`,
 		},
 	}

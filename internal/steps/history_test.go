@@ -5,13 +5,13 @@ import (
 	"strings"
 	"testing"
 
-	"parch/internal/steps"
+	"parch/internal/history"
 )
 
 const roomWaterPa = 1169 // 20 °C, 50 % (Magnus equation)
 
-func baked(ovenC float64) steps.Activation {
-	return steps.Activation{OvenK: ovenC + 273.15, RoomK: 293.15, RoomWaterPa: roomWaterPa}
+func baked(ovenC float64) history.Activation {
+	return history.Activation{OvenK: ovenC + 273.15, RoomK: 293.15, RoomWaterPa: roomWaterPa}
 }
 
 // Residual loadings after a 300 °C furnace were fitted to published dryings, and
@@ -24,7 +24,7 @@ func TestHistoriesFollowFromTheOven(t *testing.T) {
 	}{{300, 2.0, false, false}, {300, 1.0, true, false}, {250, 2.5, false, true}, {200, 3.5, false, true}, {150, 6, false, true}} {
 		a := baked(c.ovenC)
 		a.ClosedHot = c.closedHot
-		r, err := steps.ResidualLoading(sieve3A(t, 0), a, steps.DefaultPickup)
+		r, err := history.ResidualLoading(sieve3A(t, 0).Loading, a, history.DefaultPickup)
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -47,7 +47,7 @@ func TestPurgedOvens(t *testing.T) {
 	} {
 		a := baked(c.ovenC)
 		a.PurgePa = c.waterPa
-		r, err := steps.ResidualLoading(sieve3A(t, 0), a, steps.DefaultPickup)
+		r, err := history.ResidualLoading(sieve3A(t, 0).Loading, a, history.DefaultPickup)
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -56,30 +56,30 @@ func TestPurgedOvens(t *testing.T) {
 }
 
 func TestHistoryMovesTheRightWay(t *testing.T) {
-	q := func(change func(*steps.Activation)) float64 {
+	q := func(change func(*history.Activation)) float64 {
 		a := baked(250)
 		change(&a)
-		r, err := steps.ResidualLoading(sieve3A(t, 0), a, steps.DefaultPickup)
+		r, err := history.ResidualLoading(sieve3A(t, 0).Loading, a, history.DefaultPickup)
 		if err != nil {
 			t.Fatal(err)
 		}
 		return r.KgPerKg
 	}
-	fresh := q(func(*steps.Activation) {})
-	vacuum := q(func(a *steps.Activation) { a.VacuumPa = 100 })
-	month := q(func(a *steps.Activation) { a.Days = 30 })
-	open := q(func(a *steps.Activation) { a.Days, a.LeftOpen = 3, true })
-	years := q(func(a *steps.Activation) { a.Days, a.LeftOpen = 1000, true })
+	fresh := q(func(*history.Activation) {})
+	vacuum := q(func(a *history.Activation) { a.VacuumPa = 100 })
+	month := q(func(a *history.Activation) { a.Days = 30 })
+	open := q(func(a *history.Activation) { a.Days, a.LeftOpen = 3, true })
+	years := q(func(a *history.Activation) { a.Days, a.LeftOpen = 1000, true })
 	if !(vacuum < fresh && fresh < month && month < open && open < years) {
 		t.Errorf("vacuum %g, fresh %g, a month %g, three days open %g, years open %g", vacuum, fresh, month, open, years)
 	}
 	near(t, "left open for years", years, sieve3A(t, 0).Loading(roomWaterPa, 293.15), 1e-6)
 	bad := baked(900)
 	bad.Days = -1
-	if _, err := steps.ResidualLoading(sieve3A(t, 0), bad, steps.DefaultPickup); !errors.Is(err, steps.ErrNoSense) {
+	if _, err := history.ResidualLoading(sieve3A(t, 0).Loading, bad, history.DefaultPickup); !errors.Is(err, history.ErrNoSense) {
 		t.Errorf("a 900 °C oven: %v", err)
 	}
-	if r, _ := steps.ResidualLoading(sieve3A(t, 0), baked(120), steps.DefaultPickup); len(r.Notes) != 2 {
+	if r, _ := history.ResidualLoading(sieve3A(t, 0).Loading, baked(120), history.DefaultPickup); len(r.Notes) != 2 {
 		t.Errorf("a 120 °C oven goes without a remark: %q", r.Notes)
 	}
 }

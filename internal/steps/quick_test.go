@@ -7,6 +7,7 @@ import (
 	"strings"
 	"testing"
 
+	"parch/internal/history"
 	"parch/internal/steps"
 	"parch/internal/thermo"
 )
@@ -373,8 +374,8 @@ func TestHistoryByHand(t *testing.T) {
 		}
 		return 2e-4 * pa
 	}}
-	a := steps.Activation{OvenK: 573.15, Days: 2, RoomK: 293.15, RoomWaterPa: 1000}
-	r, err := steps.ResidualLoading(s, a, steps.DefaultPickup)
+	a := history.Activation{OvenK: 573.15, Days: 2, RoomK: 293.15, RoomWaterPa: 1000}
+	r, err := history.ResidualLoading(s.Loading, a, history.DefaultPickup)
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -387,19 +388,19 @@ func TestHistoryByHand(t *testing.T) {
 		t.Errorf("%q", r.Notes)
 	}
 	a.ClosedHot, a.VacuumPa = true, 100
-	r, _ = steps.ResidualLoading(s, a, steps.DefaultPickup)
+	r, _ = history.ResidualLoading(s.Loading, a, history.DefaultPickup)
 	near(t, "vacuum oven, bottled hot", r.KgPerKg, 0.2-(0.2-0.009)*math.Exp(-0.002), 1e-12)
 	a.VacuumPa, a.PurgePa, a.LeftOpen = 0, 10, true
-	r, _ = steps.ResidualLoading(s, a, steps.DefaultPickup)
+	r, _ = history.ResidualLoading(s.Loading, a, history.DefaultPickup)
 	near(t, "purged, left open", r.KgPerKg, 0.2-(0.2-0.0081)*math.Exp(-4), 1e-12)
 	for celsius, notes := range map[float64]int{120: 2, 149.9: 2, 150: 1} {
 		a.OvenK = celsius + 273.15
-		if r, err = steps.ResidualLoading(s, a, steps.DefaultPickup); err != nil || len(r.Notes) != notes {
+		if r, err = history.ResidualLoading(s.Loading, a, history.DefaultPickup); err != nil || len(r.Notes) != notes {
 			t.Errorf("%g °C: %q, %v", celsius, r.Notes, err)
 		}
 	}
-	for _, bad := range []steps.Activation{{OvenK: 1000}, {OvenK: 573, Days: -1}, {OvenK: 573, VacuumPa: -1}} {
-		if _, err := steps.ResidualLoading(s, bad, steps.DefaultPickup); err == nil {
+	for _, bad := range []history.Activation{{OvenK: 1000}, {OvenK: 573, Days: -1}, {OvenK: 573, VacuumPa: -1}} {
+		if _, err := history.ResidualLoading(s.Loading, bad, history.DefaultPickup); err == nil {
 			t.Errorf("%+v is taken", bad)
 		}
 	}

@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"math"
 
+	"parch/internal/history"
 	"parch/internal/quantity"
 	"parch/internal/thermo"
 )
@@ -51,15 +52,15 @@ var (
 // RunRegenerate flushes and heats a used sieve. In and Out are what the beads
 // hold: solvent and water. The solvent was counted as lost by the step that
 // wetted the beads and is not counted again.
-func RunRegenerate(m *thermo.Mixture, used UsedSieve, flush Flush, oven Oven, history Activation, pickup Pickup) (Outcome, error) {
-	if err := used.admit(flush, oven, history.OvenK); err != nil {
+func RunRegenerate(m *thermo.Mixture, used UsedSieve, flush Flush, oven Oven, past history.Activation, pickup history.Pickup) (Outcome, error) {
+	if err := used.admit(flush, oven, past.OvenK); err != nil {
 		return Outcome{}, err
 	}
-	left, err := ResidualLoading(used.Sorbent, history, pickup)
+	left, err := history.ResidualLoading(used.Sorbent.held, past, pickup)
 	if err != nil {
 		return Outcome{}, err
 	}
-	r := regeneration{m: m, used: used, flush: flush, oven: oven, history: history}
+	r := regeneration{m: m, used: used, flush: flush, oven: oven, history: past}
 	r.runs = math.Ceil(used.Kg / oven.LoadKg)
 	if oven.Shared {
 		r.runs = used.Kg / oven.LoadKg
@@ -123,7 +124,7 @@ type regeneration struct {
 	used    UsedSieve
 	flush   Flush
 	oven    Oven
-	history Activation
+	history history.Activation
 	runs    float64
 }
 

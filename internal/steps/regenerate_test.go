@@ -8,6 +8,7 @@ import (
 
 	"pgregory.net/rapid"
 
+	"parch/internal/history"
 	"parch/internal/steps"
 )
 
@@ -33,7 +34,7 @@ func TestRegenerationHeat(t *testing.T) {
 	u := used(t, 1, 0.20)
 	u.Sorbent.HeatOfSorptionJPerMol, u.Sorbent.HeatCapacityJPerKgK = 4.2e6*0.018015, 960
 	u.SolventKg = 0
-	o, err := steps.RunRegenerate(m, u, steps.Flush{}, bench(), baked(300), steps.DefaultPickup)
+	o, err := steps.RunRegenerate(m, u, steps.Flush{}, bench(), baked(300), history.DefaultPickup)
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -43,7 +44,7 @@ func TestRegenerationHeat(t *testing.T) {
 	near(t, "loading after", o.Figure("loading after"), 2.0, 0.03)
 	alone := bench()
 	alone.Shared = false
-	if o, err = steps.RunRegenerate(m, u, steps.Flush{}, alone, baked(300), steps.DefaultPickup); err != nil {
+	if o, err = steps.RunRegenerate(m, u, steps.Flush{}, alone, baked(300), history.DefaultPickup); err != nil {
 		t.Fatal(err)
 	}
 	near(t, "a whole run", o.EnergyKWh, 7, 1e-9)
@@ -57,7 +58,7 @@ func TestOvensAndSolvent(t *testing.T) {
 	run := func(ignitionC, ovenC float64, flush steps.Flush) (steps.Outcome, error) {
 		u := used(t, 2, 0.05)
 		u.IgnitionK = ignitionC + 273.15
-		return steps.RunRegenerate(m, u, flush, bench(), baked(ovenC), steps.DefaultPickup)
+		return steps.RunRegenerate(m, u, flush, bench(), baked(ovenC), history.DefaultPickup)
 	}
 	for _, c := range []struct{ ignitionC, ovenC float64 }{{175, 300}, {320, 271}, {330, 300}} {
 		if _, err := run(c.ignitionC, c.ovenC, steps.Flush{}); !errors.Is(err, steps.ErrIgnition) || !strings.Contains(err.Error(), "flush") {
@@ -81,18 +82,18 @@ func TestOvensAndSolvent(t *testing.T) {
 // A cool oven in room air leaves beads wetter than they came, and says so.
 func TestRegenerationCanGainNothing(t *testing.T) {
 	m := mixture(t, "toluene")
-	o, err := steps.RunRegenerate(m, used(t, 2, 0.03), swept(), bench(), baked(120), steps.DefaultPickup)
+	o, err := steps.RunRegenerate(m, used(t, 2, 0.03), swept(), bench(), baked(120), history.DefaultPickup)
 	if err != nil || len(o.Warnings) < 2 || !strings.Contains(o.Warnings[0], "gains nothing") {
 		t.Fatalf("%q, %v", o.Warnings, err)
 	}
 	near(t, "loading stays", o.Figure("loading after"), 3, 1e-9)
 	vacuum := baked(200)
 	vacuum.VacuumPa = 100
-	better, err := steps.RunRegenerate(m, used(t, 2, 0.1), swept(), bench(), vacuum, steps.DefaultPickup)
+	better, err := steps.RunRegenerate(m, used(t, 2, 0.1), swept(), bench(), vacuum, history.DefaultPickup)
 	if err != nil {
 		t.Fatal(err)
 	}
-	plain, err := steps.RunRegenerate(m, used(t, 2, 0.1), swept(), bench(), baked(200), steps.DefaultPickup)
+	plain, err := steps.RunRegenerate(m, used(t, 2, 0.1), swept(), bench(), baked(200), history.DefaultPickup)
 	if err != nil || better.Out.WaterKg >= plain.Out.WaterKg {
 		t.Errorf("vacuum leaves %g kg, air %g kg, %v", better.Out.WaterKg, plain.Out.WaterKg, err)
 	}
@@ -102,7 +103,7 @@ func TestRegenerationBalances(t *testing.T) {
 	m := mixture(t, "toluene")
 	rapid.Check(t, func(rt *rapid.T) {
 		u := used(t, rapid.Float64Range(0.1, 20).Draw(rt, "kg"), rapid.Float64Range(0.001, 0.2).Draw(rt, "loading"))
-		o, err := steps.RunRegenerate(m, u, swept(), bench(), baked(rapid.Float64Range(130, 320).Draw(rt, "oven")), steps.DefaultPickup)
+		o, err := steps.RunRegenerate(m, u, swept(), bench(), baked(rapid.Float64Range(130, 320).Draw(rt, "oven")), history.DefaultPickup)
 		if err != nil {
 			rt.Fatal(err)
 		}

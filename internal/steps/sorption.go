@@ -114,6 +114,11 @@ func checkLiquid(solvent *thermo.Pure, tempK float64) error {
 }
 
 // checkAmount refuses a number that is not finite or lies outside its bounds.
+// held is the isotherm of a sieve that may have lost some of its capacity.
+func (s Sorbent) held(waterPa, tK float64) float64 {
+	return orOne(s.CapacityShare) * s.Loading(waterPa, tK)
+}
+
 func checkAmount(what, unit string, value, low, high float64) error {
 	if value >= low && value <= high {
 		return nil

@@ -1,6 +1,9 @@
-package steps
+// Package history reads how a sieve was activated and kept, and infers the water that
+// it still holds.
+package history
 
 import (
+	"errors"
 	"fmt"
 	"math"
 
@@ -51,13 +54,14 @@ type Residual struct {
 //	q = q_room - (q_room - q_oven - q_handling) exp(-k t)
 //
 // A vacuum oven is taken to hold nothing but water vapour at its pressure.
-func ResidualLoading(sorbent Sorbent, a Activation, p Pickup) (Residual, error) {
+//
+// Loading is the isotherm of the sorbent, kg/kg over a pressure of water (Pa) at tK.
+func ResidualLoading(loading func(waterPa, tK float64) float64, a Activation, p Pickup) (Residual, error) {
 	if err := a.check(); err != nil {
 		return Residual{}, err
 	}
-	share := orOne(sorbent.CapacityShare)
-	room := share * sorbent.Loading(a.RoomWaterPa, a.RoomK)
-	oven := math.Min(room, share*sorbent.Loading(a.ovenWaterPa(), a.OvenK))
+	room := loading(a.RoomWaterPa, a.RoomK)
+	oven := math.Min(room, loading(a.ovenWaterPa(), a.OvenK))
 	handling, perDay := p.HandlingKgPerKg, p.ClosedPerDay
 	if a.ClosedHot {
 		handling = p.HandlingHotKgPerKg
@@ -93,6 +97,9 @@ func (a Activation) ovenWaterPa() float64 {
 	return a.RoomWaterPa
 }
 
+// ErrNoSense: no sieve was ever treated so.
+var ErrNoSense = errors.New("outside physical sense")
+
 func (a Activation) check() error {
 	if err := checkAmount("an oven temperature", "°C", a.OvenK-273.15, 20, 650); err != nil {
 		return err
@@ -101,4 +108,11 @@ func (a Activation) check() error {
 		return err
 	}
 	return checkAmount("a vacuum", "Pa", a.VacuumPa, 0, 110e3)
+}
+
+func checkAmount(what, unit string, value, low, high float64) error {
+	if value >= low && value <= high {
+		return nil
+	}
+	return fmt.Errorf("%w: %s of %.6g %s; allowed: %.4g to %.4g %s", ErrNoSense, what, value, unit, low, high, unit)
 }

@@ -1,16 +1,15 @@
-package job
+package history
 
 import (
 	"fmt"
 	"strings"
 
-	"parch/internal/document"
 	"parch/internal/quantity"
 )
 
-// Residual is what a sieve is stated to hold, weighed or titrated by its owner
+// Stated is what a sieve is said to hold, weighed or titrated by its owner
 // rather than inferred from an oven.
-type Residual struct {
+type Stated struct {
 	KgPerKg float64
 	OvenK   float64 // that it comes from; 0: not stated
 }
@@ -23,18 +22,18 @@ const (
 
 // StatedResidual reads "residual 1.5 g/100 g", with or without the oven after it:
 // "residual 1.5 g/100 g, 300 °C". ok is false where the text is no such statement.
-func StatedResidual(text string) (r Residual, ok bool, err error) {
+func StatedResidual(text string) (r Stated, ok bool, err error) {
 	words := strings.Fields(text)
 	if len(words) == 0 || !strings.EqualFold(words[0], "residual") {
-		return Residual{}, false, nil
+		return Stated{}, false, nil
 	}
 	amount, oven, withOven := strings.Cut(strings.Join(words[1:], " "), ",")
 	loading, err := quantity.Parse(amount, quantity.MassRatio)
 	if err != nil {
-		return Residual{}, true, err
+		return Stated{}, true, err
 	}
 	if !(loading.SI >= 0 && loading.SI <= mostResidual) {
-		return Residual{}, true, fmt.Errorf("%s of water on a sieve is not possible here; allowed: 0 g/100 g to %.0f g/100 g", quantity.Quote(strings.TrimSpace(amount)), 100*mostResidual)
+		return Stated{}, true, fmt.Errorf("%s of water on a sieve is not possible here; allowed: 0 g/100 g to %.0f g/100 g", quantity.Quote(strings.TrimSpace(amount)), 100*mostResidual)
 	}
 	r.KgPerKg = loading.SI
 	if !withOven {
@@ -46,19 +45,4 @@ func StatedResidual(text string) (r Residual, ok bool, err error) {
 	}
 	r.OvenK = at.SI
 	return r, true, err
-}
-
-// stated takes a history that states what the sieve holds.
-func (r *reader) stated(n *document.Node, out *Lot) (ok bool) {
-	residual, ok, err := StatedResidual(n.Text())
-	switch {
-	case !ok:
-		return false
-	case err != nil:
-		n.Fail("%s: %s; write it like \"residual 1.5 g/100 g\" or \"residual 1.5 g/100 g, 300 °C\"", quantity.Quote(n.Text()), err)
-		return true
-	}
-	out.SieveHistoryK, out.ResidualLoading, out.ResidualStated = residual.OvenK, residual.KgPerKg, true
-	r.note(n, "the sieve is taken to hold %s as stated; it is not checked", quantity.Format(residual.KgPerKg, quantity.MassRatio, "g/100 g", 3))
-	return true
 }

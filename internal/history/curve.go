@@ -1,4 +1,4 @@
-package job
+package history
 
 import (
 	"sort"
@@ -11,7 +11,7 @@ import (
 // key names the history at that very temperature, or is empty. ok is false outside
 // the range from lowK to highK.
 func ActivatedAt(all []catalog.History, tK float64) (kgPerKg float64, key string, lowK, highK float64, ok bool) {
-	curve := activations(all)
+	curve := Activations(all)
 	if len(curve) == 0 {
 		return 0, "", 0, 0, false
 	}
@@ -28,4 +28,28 @@ func ActivatedAt(all []catalog.History, tK float64) (kgPerKg float64, key string
 	low := curve[at-1]
 	share := (tK - low.TemperatureK) / (high.TemperatureK - low.TemperatureK)
 	return low.ResidualKgPerKg.SI + share*(high.ResidualKgPerKg.SI-low.ResidualKgPerKg.SI), "", lowK, highK, true
+}
+
+// Activations sorts the histories that have a temperature. Where two share one,
+// that which leaves more water counts: it is the ordinary handling.
+func Activations(all []catalog.History) []catalog.History {
+	var curve []catalog.History
+	for _, h := range all {
+		if h.TemperatureK > 0 {
+			curve = append(curve, h)
+		}
+	}
+	sort.SliceStable(curve, func(i, j int) bool {
+		if curve[i].TemperatureK != curve[j].TemperatureK {
+			return curve[i].TemperatureK < curve[j].TemperatureK
+		}
+		return curve[i].ResidualKgPerKg.SI > curve[j].ResidualKgPerKg.SI
+	})
+	var distinct []catalog.History
+	for _, h := range curve {
+		if len(distinct) == 0 || distinct[len(distinct)-1].TemperatureK != h.TemperatureK {
+			distinct = append(distinct, h)
+		}
+	}
+	return distinct
 }
