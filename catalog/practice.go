@@ -42,6 +42,7 @@ var practiceKeys = map[string]quantity.Dimension{
 	"dose-minimum":          quantity.MassConcentration,
 	"dose-maximum":          quantity.MassConcentration,
 	"oxide-history":         quantity.Number,
+	"soak-dust":             quantity.Share,
 	"powder-diameter":       quantity.Length,
 	"powder-hold-up":        quantity.HoldUp,
 	"stir-velocity":         quantity.Velocity,

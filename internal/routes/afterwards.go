@@ -1,6 +1,8 @@
 package routes
 
 import (
+	"math"
+
 	"parch/internal/assay"
 	"parch/internal/steps"
 )
@@ -16,7 +18,53 @@ func (c *Case) Life(run *Run, place int) (steps.SieveLife, error) {
 	agent := c.Catalog.Agents[o.Agent]
 	return steps.FollowSieve(c.Mixture, o.In, c.Goal(), choice.soakHours*3600, c.sorbent(o.Agent, Discard), c.soakRig(choice.stirred), steps.LifeRules{
 		Kg: o.AgentKg, FreshKgPerKg: c.ResidualOn(o.Agent), FadePerCycle: agent.Fade.SI, MostCycles: int(agent.Lives.SI),
+		DustPerBatch: c.practice(SieveDust),
 	}, lifeBatches)
+}
+
+// SieveDust is the operating fact for what beads lose as dust with each lot.
+const SieveDust = "soak-dust"
+
+// SieveUse is what a charge of beads has gone through when it is regenerated or
+// replaced, and what it needs in a year.
+type SieveUse struct {
+	ChargeKg       float64
+	Lots           int
+	TakenKg        float64 // of water, by all these lots
+	LoadingKgPerKg float64 // after them
+	NextOutlet     float64 // kg/kg, of the next such lot, not regenerated; NaN where it would be made wetter
+	Uses           float64 // of a charge before it is discarded
+	CapacityLeft   float64 // share of a new one's capacity at the last of them
+	DustShare      float64 // of the charge, a lot
+	DustKgPerYear  float64
+}
+
+// UseOf follows the charge of beads of a soak through the lots that go over it, and
+// one more.
+func (c *Case) UseOf(run *Run, place int) (SieveUse, error) {
+	o, choice := run.Outcomes[place], run.Settings.at(run.Route, place)
+	agent, lots := c.Catalog.Agents[o.Agent], max(choice.lots, 1)
+	const anyOutlet = 1
+	life, err := steps.FollowSieve(c.Mixture, o.In, anyOutlet, choice.soakHours*3600, c.sorbent(o.Agent, Discard), c.soakRig(choice.stirred), steps.LifeRules{
+		Kg: o.AgentKg, FreshKgPerKg: c.ResidualOn(o.Agent), MostCycles: lifeBatches,
+	}, lots+1)
+	if err != nil {
+		return SieveUse{}, err
+	}
+	last, next := life.Batches[lots-1], life.Batches[lots]
+	u := SieveUse{
+		ChargeKg: o.AgentKg, Lots: lots, TakenKg: last.WaterTakenKg, LoadingKgPerKg: last.LoadingAfter, NextOutlet: next.Outlet,
+		Uses: 1, CapacityLeft: 1, DustShare: c.practice(SieveDust),
+	}
+	if next.RegeneratedFirst || next.RenewedFirst {
+		u.NextOutlet = math.NaN()
+	}
+	if choice.after == Regenerate {
+		u.Uses = agent.Lives.SI
+		u.CapacityLeft = math.Pow(1-agent.Fade.SI, u.Uses-1)
+	}
+	u.DustKgPerYear = u.DustShare * u.ChargeKg * c.Lot.BatchesPerYear
+	return u, nil
 }
 
 // A lot of the size of a drum is kept in one, a smaller one under a septum.

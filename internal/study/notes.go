@@ -16,7 +16,14 @@ func afterwards(k *routes.Case, r *Route) []string {
 	var notes []string
 	add := func(format string, args ...any) { notes = append(notes, fmt.Sprintf(format, args...)) }
 	for place, s := range r.Run.Route {
-		if o := &r.Run.Outcomes[place]; s.Kind != steps.Soak || o.AgentKg == 0 || o.Figure(steps.LotsServed) > 1 || o.Figure("charges") > 1 {
+		o := &r.Run.Outcomes[place]
+		if s.Kind != steps.Soak || o.AgentKg == 0 || o.Figure("charges") > 1 {
+			continue
+		}
+		if use, err := k.UseOf(&r.Run, place); err == nil {
+			notes = append(notes, sieveUse(k, s.Agent, use))
+		}
+		if o.Figure(steps.LotsServed) > 1 {
 			continue
 		}
 		if life, err := k.Life(&r.Run, place); err == nil {
@@ -35,6 +42,32 @@ func afterwards(k *routes.Case, r *Route) []string {
 		}
 	}
 	return notes
+}
+
+// sieveUse tells what a charge of beads takes, what it would do next, and what wears
+// it out.
+func sieveUse(k *routes.Case, agent string, u routes.SieveUse) string {
+	a := k.Catalog.Agents[agent]
+	text := fmt.Sprintf("%s: %s have taken %s of water after %s and hold %.2g g/100 g; ", a.Plain(),
+		quantity.FormatMass(u.ChargeKg), quantity.FormatMass(u.TakenKg), lotsWord(u.Lots), 100*u.LoadingKgPerKg)
+	if math.IsNaN(u.NextOutlet) {
+		text += "the next lot would come out wetter than it went in"
+	} else {
+		text += fmt.Sprintf("the next, without an oven between, would be left at %s", quantity.FormatWater(u.NextOutlet))
+	}
+	if u.Uses > 1 {
+		text += fmt.Sprintf("; of the capacity of new beads %s are left at the last of %s uses (%s lost each time, %s)",
+			quantity.FormatShare(u.CapacityLeft), quantity.Significant(u.Uses, 3), quantity.FormatShare(a.Fade.SI), a.Fade.Confidence)
+	}
+	return text + fmt.Sprintf("; dust, taken as %s a lot (%s), takes %s of fresh beads a year, which the bill leaves to the write-off of the charge",
+		quantity.FormatShare(u.DustShare), k.Catalog.Practice[routes.SieveDust].Confidence, quantity.FormatMass(u.DustKgPerYear))
+}
+
+func lotsWord(n int) string {
+	if n == 1 {
+		return "one lot"
+	}
+	return fmt.Sprintf("%d lots", n)
 }
 
 // ovenWarning is shown on every route whose wet beads go into an oven again.

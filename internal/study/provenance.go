@@ -7,6 +7,8 @@ import (
 
 	"parch/catalog"
 	"parch/internal/costs"
+	"parch/internal/job"
+	"parch/internal/quantity"
 	"parch/internal/steps"
 )
 
@@ -51,7 +53,7 @@ func gather(r *Report, c *catalog.Catalog) *shelf {
 				p.carrier(l.Solvent.Key, s.Carrier)
 			}
 		}
-		p.history(l.Job.SieveHistory)
+		p.history(&l.Job)
 	}
 	for _, key := range slices.Sorted(maps.Keys(c.Practice)) {
 		if appliesTo(key, kinds) {
@@ -179,7 +181,13 @@ func (p *shelf) agent(a *catalog.Agent) {
 	}
 }
 
-func (p *shelf) history(key string) {
+func (p *shelf) history(lot *job.Lot) {
+	if lot.SieveTreatment != "" {
+		p.note("sieve history "+lot.SieveTreatment+": residual loading", quantity.Format(lot.ResidualLoading, quantity.MassRatio, "g/100 g", 3),
+			catalog.Origin{Source: "assumption", Confidence: catalog.Assumption, Note: "handling and standing are assumed"})
+		return
+	}
+	key := lot.SieveHistory
 	for _, h := range p.catalog.Histories {
 		if h.Key == key || key == "" {
 			p.value("sieve history "+h.Text+": residual loading", h.ResidualKgPerKg)
