@@ -20,6 +20,9 @@ const (
 	cardHelper = 13
 )
 
+// cardRouteEnd is the last column of the chosen route: an id of four steps is long.
+const cardRouteEnd = cardFirst + 1
+
 const (
 	mostOnCard = 8  // routes
 	cardPoints = 16 // of the chart
@@ -46,7 +49,7 @@ func (l *layout) benchCard() *grid {
 	g.mixed, g.frozenRows, g.portrait, g.printColumns = true, frameRows, true, cardField
 	for _, lot := range l.lots {
 		if len(lot.routes) > 0 {
-			l.card(g, lot)
+			l.card(g, lot, l.pointsThatFit(g, lot))
 		}
 	}
 	if len(g.printed) == 0 {
@@ -54,6 +57,24 @@ func (l *layout) benchCard() *grid {
 	}
 	g.percent = g.cardScale()
 	return g
+}
+
+// Rows of what to expect on a card: as many as its page holds in letters that can be
+// read.
+const (
+	mostExpected  = 10
+	leastExpected = 8
+)
+
+func (l *layout) pointsThatFit(g *grid, lot *lotModel) int {
+	for points := mostExpected; points > leastExpected; points-- {
+		trial := &grid{widths: g.widths, printColumns: g.printColumns, heights: map[int]float64{}}
+		l.card(trial, lot, points)
+		if trial.legible(trial.printed[0]) {
+			return points
+		}
+	}
+	return leastExpected
 }
 
 // onCard are the routes that a card can be chosen for: the first of each chain of
@@ -122,10 +143,10 @@ func (c *cardModel) heads(row, figure int, x column) {
 
 const dash = "–"
 
-func (l *layout) card(g *grid, lot *lotModel) {
+func (l *layout) card(g *grid, lot *lotModel, points int) {
 	c := &cardModel{g: g, lot: lot, list: lot.onCard()}
 	for k, r := range c.list {
-		c.words = append(c.words, l.cardWords(r))
+		c.words = append(c.words, l.cardWords(r, points))
 		if r == lot.best() {
 			c.chosen = k
 		}
@@ -137,10 +158,10 @@ func (l *layout) card(g *grid, lot *lotModel) {
 	c.texts("Set points", "", func(w cardWords) []string { return w.settings })
 	c.texts("When to stop", "", func(w cardWords) []string { return w.until })
 	beside := c.expectRows()
-	l.cardChart(c, first+4, beside)
+	l.cardChart(c, first+4, beside, points)
 	l.testRowsOf(c)
 	g.fixedTexts("Storage, label", l.labelWords(lot))
-	c.texts("Waste", "weighed", func(w cardWords) []string { return w.waste })
+	c.texts("Waste, a batch", "weighed", func(w cardWords) []string { return w.waste })
 	c.texts("Never mix", "read", func(w cardWords) []string { return w.never })
 	g.signFields()
 	g.printed = append(g.printed, rows{first, g.last()})
@@ -150,7 +171,11 @@ func (l *layout) cardTop(c *cardModel, row int) {
 	g, lot := c.g, c.lot
 	g.across(1, cardField, row, block, fmt.Sprintf("Bench card, lot %d: %s", lot.no, shortened(lot.Job.Name, mostTitle)))
 	g.put(cardLabel, row+1, text(plain, "Route"))
+	for column := cardText; column <= cardRouteEnd; column++ {
+		g.put(column, row+1, blank(input))
+	}
 	g.put(cardText, row+1, text(input, c.list[c.chosen].ID))
+	g.merged = append(g.merged, merge{row + 1, cardText, cardRouteEnd})
 	for k, r := range c.list {
 		g.put(c.helper(0, k), row+1, text(plain, r.ID))
 	}
@@ -159,9 +184,9 @@ func (l *layout) cardTop(c *cardModel, row int) {
 	g.put(cardChosen, row+1, derived(fmt.Sprintf("IFERROR(MATCH(%s,%s,0),1)", at(cardText, row+1), choices), float64(c.chosen+1)).shown("0"))
 	g.limits = append(g.limits, limit{place: at(cardText, row+1), words: choices, prompt: "Choose the route that the card is for.", refuse: "Choose a route from the list."})
 	state := fmt.Sprintf(`IF(%s>0,"Edited since the run: %s","Run of "&%s)`, changedName, runAgain, c.dateCell(row+2))
-	g.put(cardFirst, row+1, cell{look: message, formula: state, value: "Run of " + l.runDate()})
+	g.put(cardRouteEnd+1, row+1, cell{look: message, formula: state, value: "Run of " + l.runDate()})
 	g.put(cardChosen, row+2, text(plain, l.runDate()))
-	g.flags = append(g.flags, flag{at(cardFirst, row+1) + ":" + at(cardField, row+1), changedName + ">0", fail},
+	g.flags = append(g.flags, flag{at(cardRouteEnd+1, row+1) + ":" + at(cardField, row+1), changedName + ">0", fail},
 		flag{at(cardText, row+4), changedName + ">0", fail})
 	g.put(cardLabel, row+2, text(words, "In words"))
 	values := make([]any, len(c.list))
@@ -237,7 +262,7 @@ func (c *cardModel) texts(label, tick string, of func(cardWords) []string) {
 				values[k] = clean(oneLine(list[i]))
 			}
 		}
-		c.g.put(cardLabel, row, count(i+1).as(plain))
+		c.g.put(cardLabel, row, text(plain, fmt.Sprintf("%d)", i+1)))
 		if tick == "" {
 			c.chooseAcross(cardField, row, values)
 			continue
@@ -265,7 +290,7 @@ func (g *grid) fixedTexts(label string, list []string) {
 	g.put(cardLabel, row, text(heading, label))
 	for i, s := range list {
 		row++
-		g.put(cardLabel, row, count(i+1).as(plain))
+		g.put(cardLabel, row, text(plain, fmt.Sprintf("%d)", i+1)))
 		g.across(cardText, cardField, row, words, s)
 	}
 }
@@ -277,14 +302,14 @@ var expectColumns = []column{{"Time", "h"}, {"Collected", "mL"}, {"Water", "mg/k
 func (c *cardModel) expectRows() (first int) {
 	row := c.g.last() + 1
 	c.head(row, "Expect, from the start of the step", "measured")
-	c.g.put(cardText, row, text(heading, "Water in the first step that boils, or else the first known; each charge of a still alike"))
+	c.g.put(cardText, row, text(heading, "Water in the first step that boils, else the first known; each charge alike"))
 	for i, x := range expectColumns {
 		h := text(heading, x.heading())
 		h.right = true
 		c.g.put(cardFirst+i, row, h)
 		c.heads(row, helperExpect+i, x)
 	}
-	c.g.heights[row] = linesHigh(3)
+	c.g.heights[row] = linesHigh(2)
 	first = row + 1
 	most := 1
 	for _, w := range c.words {
@@ -343,7 +368,7 @@ func (c *cardModel) expectRow(row, i int, formats [5]string) {
 
 func (l *layout) testRowsOf(c *cardModel) {
 	lot := c.lot
-	say := fmt.Sprintf("Karl Fischer, %s: the mean of %d injections at or below %s is accepted (target %s less %s for the uncertainty).",
+	say := fmt.Sprintf("Karl Fischer, %s: accept a mean of %d injections at or below %s (%s less %s for uncertainty).",
 		l.report.Job.Site.KarlFischer, lot.Injections, waterOr(lot.AcceptAt, "–"), significant(lot.target), significant(lot.uncertainty))
 	if lot.CannotShow != "" {
 		say = "Karl Fischer: the target " + oneLine(lot.CannotShow) + "."

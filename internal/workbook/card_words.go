@@ -24,7 +24,9 @@ type expected struct {
 	hours, collectedML, water, pot, head float64 // h, mL, mg/kg, °C; NaN where the step has none
 }
 
-func (l *layout) cardWords(r *routeModel) cardWords {
+// cardWords are the texts of a card for a route, with at most the given points of what
+// to expect.
+func (l *layout) cardWords(r *routeModel, points int) cardWords {
 	w := cardWords{stops: l.stopChecks(r), waste: wasteWords(r), never: neverWords(r)}
 	several := len(r.Run.Outcomes) > 1
 	soaks, beds := 0, 0
@@ -50,7 +52,7 @@ func (l *layout) cardWords(r *routeModel) cardWords {
 			w.settings = append(w.settings, name+": "+s)
 		}
 		w.until = append(w.until, name+": "+oneLine(why(*o))+".")
-		w.expect = append(w.expect, expectations(short, o, expectPoints(r))...)
+		w.expect = append(w.expect, expectations(short, o, expectPoints(r, points))...)
 	}
 	return w
 }
@@ -167,10 +169,22 @@ func settingWords(r *routeModel, o *steps.Outcome, stirred bool) string {
 		}
 		parts = append(parts, fmt.Sprintf("%s for %s h", way, significant(o.HoursTotal-o.HoursAttended)))
 	}
+	var each []string
 	for _, name := range settingFigures[o.Kind] {
-		if v := o.Figure(name); !math.IsNaN(v) && !math.IsInf(v, 0) && v != 0 {
-			parts = append(parts, strings.TrimSpace(fmt.Sprintf("%s %s %s", name, significant(v), unitOf(o, name))))
+		v := o.Figure(name)
+		if math.IsNaN(v) || math.IsInf(v, 0) || v == 0 {
+			continue
 		}
+		short, ofCharge := strings.CutSuffix(name, ", each charge")
+		said := strings.TrimSpace(fmt.Sprintf("%s %s %s", short, significant(v), unitOf(o, name)))
+		if ofCharge {
+			each = append(each, said)
+		} else {
+			parts = append(parts, said)
+		}
+	}
+	if len(each) > 0 {
+		parts = append(parts, "each charge: "+strings.Join(each, ", "))
 	}
 	if o.Condenser.RunM3PerS > 0 {
 		parts = append(parts, fmt.Sprintf("cooling water %s L/min, warms by %s K", significant(o.Condenser.RunM3PerS*6e4), significant(o.Condenser.RunRiseK)))
@@ -193,18 +207,15 @@ func unitOf(o *steps.Outcome, name string) string {
 	return ""
 }
 
-// mostExpected rows of what to expect stand on a card.
-const mostExpected = 10
-
-// expectPoints is how many points each step with a course may take.
-func expectPoints(r *routeModel) int {
+// expectPoints is how many of the points each step with a course may take.
+func expectPoints(r *routeModel, points int) int {
 	n := 0
 	for _, o := range r.Run.Outcomes {
 		if len(o.Course) > 0 {
 			n++
 		}
 	}
-	return max(2, mostExpected/max(n, 1))
+	return max(2, points/max(n, 1))
 }
 
 // expectations picks points evenly from the course of a step.
@@ -246,16 +257,31 @@ func spaced(n, most int) (out []int) {
 	return out
 }
 
-// wasteWords say where what is left goes, from the lines of the bill.
+// leastWaste is the waste of a batch that a bench balance still shows, in kg or L: less
+// needs no line of its own (common practice, no source).
+const leastWaste = 1e-5
+
+// wasteWords say where what is left goes, from the lines of the bill: a sentence for
+// each bin.
 func wasteWords(r *routeModel) (out []string) {
+	var bins []string
+	into := map[string][]string{}
 	for _, line := range r.lines {
-		if line.Head == steps.Waste {
-			amount := significant(line.perBatch) + " " + symbol(line.Unit)
-			if line.Unit == "kg" {
-				amount = quantity.FormatMass(line.perBatch)
-			}
-			out = append(out, fmt.Sprintf("%s: %s a batch, %s.", capital(orWords(line.Label, line.Item)), amount, oneLine(line.Basis)))
+		if line.Head != steps.Waste || line.perBatch < leastWaste {
+			continue
 		}
+		amount := significant(line.perBatch) + " " + symbol(line.Unit)
+		if line.Unit == "kg" {
+			amount = quantity.FormatMass(line.perBatch)
+		}
+		bin := capital(orWords(line.Label, line.Item))
+		if into[bin] == nil {
+			bins = append(bins, bin)
+		}
+		into[bin] = append(into[bin], amount+" of "+oneLine(line.Basis))
+	}
+	for _, bin := range bins {
+		out = append(out, fmt.Sprintf("%s: %s.", bin, strings.Join(into[bin], "; ")))
 	}
 	if len(out) == 0 {
 		out = append(out, "No waste is counted for this route; what is spilt or drained goes to the site's solvent waste.")
@@ -263,12 +289,13 @@ func wasteWords(r *routeModel) (out []string) {
 	return out
 }
 
-// mostNever pairs stand on a card; Compare lists them all.
+// mostNever reasons stand on a card; Compare lists all pairs.
 const mostNever = 4
 
-// neverWords name the agents that must not meet the solvent, the dangerous first.
+// neverWords name the agents that must not meet the solvent, by the reason, the
+// dangerous first.
 func neverWords(r *routeModel) []string {
-	var dangerous, unsuitable []string
+	dangerous, unsuitable := &byReason{}, &byReason{}
 	for _, x := range r.lot.Excluded {
 		_, agent, ok := strings.Cut(x.ID, ":")
 		if !ok || strings.Contains(x.ID, "+") {
@@ -277,15 +304,41 @@ func neverWords(r *routeModel) []string {
 		agent = strings.ReplaceAll(agent, "-", " ")
 		switch reason := oneLine(x.Reason); {
 		case strings.HasPrefix(reason, "dangerous"):
-			dangerous = append(dangerous, fmt.Sprintf("%s: %s.", capital(agent), reason))
+			dangerous.add(agent, reason)
 		case strings.HasPrefix(reason, "unsuitable") && strings.HasPrefix(x.ID, string(steps.Reactive)):
-			unsuitable = append(unsuitable, fmt.Sprintf("%s: %s.", capital(agent), reason))
+			unsuitable.add(agent, reason)
 		}
 	}
-	out := slices.Concat(dangerous, unsuitable)
+	out := slices.Concat(dangerous.sentences(), unsuitable.sentences())
 	out = out[:min(len(out), mostNever)]
 	if len(out) == 0 {
 		out = append(out, "No pair is refused as dangerous here beyond the cautions above; keep acids, bases and oxidizers away.")
+	}
+	return out
+}
+
+// byReason are agents by the reason for which they are refused, in the order in which
+// the reasons come.
+type byReason struct {
+	reasons []string
+	agents  map[string][]string
+}
+
+func (b *byReason) add(agent, reason string) {
+	if b.agents == nil {
+		b.agents = map[string][]string{}
+	}
+	if b.agents[reason] == nil {
+		b.reasons = append(b.reasons, reason)
+	}
+	if !slices.Contains(b.agents[reason], agent) {
+		b.agents[reason] = append(b.agents[reason], agent)
+	}
+}
+
+func (b *byReason) sentences() (out []string) {
+	for _, reason := range b.reasons {
+		out = append(out, fmt.Sprintf("%s: %s.", capital(strings.Join(b.agents[reason], ", ")), reason))
 	}
 	return out
 }

@@ -44,15 +44,16 @@ func courseOf(r *routeModel) drawnCourse {
 }
 
 const (
-	cardChartWidth  = 238 // pixels, within the column of text
-	cardChartHeight = 190
+	cardChartWidth = 238 // pixels, within the column of text
+	cardRowHeight  = 19  // of the rows of what to expect beside it
 )
 
 // cardChart draws water against time for the chosen route, beside its figures.
 // Its points stand to the right of the card, from the row data.
-func (l *layout) cardChart(c *cardModel, data, row int) {
+func (l *layout) cardChart(c *cardModel, data, row, points int) {
+	height := cardRowHeight * points
 	g := c.g
-	lack := (cardChartHeight+8)*pixelPoints - g.span(row, g.last())
+	lack := float64(height+8)*pixelPoints - g.span(row, g.last())
 	if lack > 0 {
 		g.heights[g.last()] = g.height(g.last()) + lack
 	}
@@ -85,11 +86,11 @@ func (l *layout) cardChart(c *cardModel, data, row int) {
 	logarithmic(&ch.YAxis, "mg/kg")
 	ch.YAxis.Title = excelize.ChartTitle{} // the title names both: the chart is small
 	bound(&ch.YAxis, low, high)
-	points := func(column int) string { return on(sheet, area(column, data+1, data+cardPoints)) }
+	cells := func(column int) string { return on(sheet, area(column, data+1, data+cardPoints)) }
 	head := func(column int) string { return on(sheet, fixed(column, data)) }
-	ch.Series = append(ch.Series, drawnLine(0, on(sheet, fixed(cardChosen, data+1)), points(cardTime), points(cardWater)),
-		drawnLevel(head(cardLevel), points(cardTime), points(cardLevel), "D55E00", excelize.LineDashDash))
-	g.draw(cardText, row, cardChartWidth, cardChartHeight, fmt.Sprintf("Lot %d: water against time", c.lot.no), ch)
+	ch.Series = append(ch.Series, drawnLine(0, on(sheet, fixed(cardChosen, data+1)), cells(cardTime), cells(cardWater)),
+		drawnLevel(head(cardLevel), cells(cardTime), cells(cardLevel), "D55E00", excelize.LineDashDash))
+	g.draw(cardText, row, cardChartWidth, height, fmt.Sprintf("Lot %d: water against time", c.lot.no), ch)
 }
 
 func (c *cardModel) chartRow(row, i int, courses []drawnCourse) {

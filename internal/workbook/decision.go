@@ -39,14 +39,14 @@ func (l *layout) decision() *grid {
 	n := len(l.lots)
 	for full := min(n, mostInFull); full > 0; full-- {
 		for most := mostNamed; most > 0; most-- {
-			if g := l.decisionOf(full, n-full, most); g.legible() || n+most == 2 {
+			if g := l.decisionOf(full, n-full, most); g.legible(rows{1, g.last()}) || n+most == 2 {
 				return g
 			}
 		}
 	}
 	lines := min(n, mostInLines)
 	for ; lines > 1; lines-- {
-		if g := l.decisionOf(0, lines, 0); g.legible() {
+		if g := l.decisionOf(0, lines, 0); g.legible(rows{1, g.last()}) {
 			return g
 		}
 	}
@@ -57,9 +57,10 @@ func (l *layout) decision() *grid {
 // has them all.
 const mostNamed = 3
 
-// legible reports whether the sheet prints on one page in letters that can be read.
-func (g *grid) legible() bool {
-	return g.pageScale(rows{1, g.last()})*paints[words].size >= leastLetters
+// legible reports whether rows that print on a page of their own do so in letters that
+// can be read.
+func (g *grid) legible(r rows) bool {
+	return g.pageScale(r)*paints[words].size >= leastLetters
 }
 
 // decisionOf shows the first lots in full, each with the most that is named of what

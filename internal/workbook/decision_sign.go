@@ -55,4 +55,4 @@ func (g *grid) field(first, last, row int) {
 	g.merged = append(g.merged, merge{row, first, last})
 }
 
-const signHeight = 24 // points: room for a hand
+const signHeight = 22 // points: room for a hand

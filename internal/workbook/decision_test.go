@@ -69,6 +69,34 @@ func decisionHolds(t *testing.T, g *grid) (full, shown, out int) {
 	return full, len(lots), out
 }
 
+// Each card, too, prints in letters of 7 points, which is the scale that is stored for
+// the whole sheet, and the id of a route fits the cell in which it is chosen.
+func TestCardsAreLegible(t *testing.T) {
+	reports := map[string]*study.Report{"demonstration": demo(t), "made-up lots": synthetic(), "many lots": many(12, 8)}
+	for _, name := range aliveJobs {
+		reports[name] = jobReport(t, name)
+	}
+	for name, r := range reports {
+		m, err := newModel(r)
+		if err != nil {
+			t.Fatal(err)
+		}
+		g := lay(m).gridOf(sheetBenchCard)
+		if points := float64(g.percent) * 10 / 100; points < 7 {
+			t.Errorf("%s: cards are printed in %.1f points", name, points)
+		}
+		for _, card := range g.printed {
+			row := card.first + 1
+			for _, c := range g.rows[row-1][cardHelper-1:] {
+				id, _ := c.value.(string)
+				if width := widthOf(id, 10, false); width > g.roomFor(cardText, row) {
+					t.Errorf("%s: %s is %.0f points wide, its cell %.0f", name, id, width, g.roomFor(cardText, row))
+				}
+			}
+		}
+	}
+}
+
 var wordPlace = regexp.MustCompile(`yMin="([0-9.]+)" xMax="[0-9.]+" yMax="[0-9.]+">(Recommended|Prepared)<`)
 
 // checkLetters holds the size of the letters of the page to sign, by the distance of

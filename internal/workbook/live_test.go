@@ -52,8 +52,8 @@ func TestResultsOfTheRunSayThatSomethingWasEdited(t *testing.T) {
 			}
 		}
 		for _, card := range l.gridOf(sheetBenchCard).printed {
-			top, amounts := read(sheetBenchCard, cardFirst, card.first+1), read(sheetBenchCard, cardText, card.first+4)
-			if said(sheetBenchCard, cardFirst, card.first+1) != (edit != nil) || said(sheetBenchCard, cardText, card.first+4) != (edit != nil) {
+			top, amounts := read(sheetBenchCard, cardRouteEnd+1, card.first+1), read(sheetBenchCard, cardText, card.first+4)
+			if said(sheetBenchCard, cardRouteEnd+1, card.first+1) != (edit != nil) || said(sheetBenchCard, cardText, card.first+4) != (edit != nil) {
 				t.Errorf("card in row %d after %v: %v, %v", card.first, edit, top, amounts)
 			}
 		}
