@@ -85,7 +85,9 @@ func (l *layout) compareCharts(g *grid) {
 		places := rows{lot.routes[0].no - 1, lot.routes[drawn-1].no - 1}
 		height := max(380, 130+barPitch(lot.routes[:drawn])*drawn)
 		row := g.roomForChart(float64(height) * pixelPoints)
-		g.draw(1, row, costWidth, height, fmt.Sprintf("Lot %d: cost", lot.no), l.costChart(lot, places))
+		if cost := l.costChart(lot, places); len(cost.Series) > 0 { // nothing has a price in some currencies
+			g.draw(1, row, costWidth, height, fmt.Sprintf("Lot %d: cost", lot.no), cost)
+		}
 		g.draw(waterColumn, row, waterWidth, height, fmt.Sprintf("Lot %d: water", lot.no), l.alongChart(lot))
 	}
 	if left := len(l.lots) - mostLotsDrawn; left > 0 {

@@ -72,7 +72,7 @@ func decisionHolds(t *testing.T, g *grid) (full, shown, out int) {
 // Each card, too, prints in letters of 7 points, which is the scale that is stored for
 // the whole sheet, and the id of a route fits the cell in which it is chosen.
 func TestCardsAreLegible(t *testing.T) {
-	reports := map[string]*study.Report{"demonstration": demo(t), "made-up lots": synthetic(), "many lots": many(12, 8)}
+	reports := map[string]*study.Report{"demonstration": demo(t), "made-up lots": synthetic(), "many lots": many(6, 8)}
 	for _, name := range aliveJobs {
 		reports[name] = jobReport(t, name)
 	}
