@@ -22,6 +22,7 @@ var typed = map[string][]string{
 	"dose":        {"100 g/L", "0.02 g/L", "1000 g/L", "1 kg", "2 %", "10 % m/m", "5 % m/v"},
 	"hours":       {"24", "2 min", "183 d", "1e9", "0", "soon"},
 	"volume":      {"1 L", "0.05 L", "10 m3", "1 gal"},
+	"rinse":       {"0 mL", "100 mL", "2 L"},
 	"free-water":  {"0 mL", "100 mL", "2 L"},
 	"temperature": {"20 C", "70 F", "-20 C", "100 C", "0 K"},
 	"receiver":    {"5 C", "40 C", "0 C"},

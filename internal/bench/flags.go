@@ -22,7 +22,7 @@ var uses = map[steps.Kind]use{
 	steps.Settle:   {takes: []string{"free-water"}},
 	steps.Trap:     {takes: []string{"to", "free-water", "power", "receiver", "pressure", "peroxide", "hours", "carrier", "dose", "stages"}},
 	steps.Forerun:  {takes: []string{"to", "free-water", "power", "pressure", "peroxide", "stages"}},
-	steps.Salt:     {takes: []string{"agent", "to", "dose", "hours", "free-water"}, needs: []string{"agent"}, agents: []string{"salt"}},
+	steps.Salt:     {takes: []string{"agent", "to", "dose", "hours", "free-water", "rinse"}, needs: []string{"agent"}, agents: []string{"salt"}},
 	steps.Soak:     {takes: []string{"agent", "to", "dose", "hours", "stirred", "activated", "height", "free-water", "charges", "powder"}, needs: []string{"agent"}, agents: []string{"sieve", "oxide"}},
 	steps.Column:   {takes: []string{"agent", "to", "dose", "activated"}, needs: []string{"agent"}, agents: []string{"sieve", "oxide"}},
 	steps.Reactive: {takes: []string{"agent", "to", "dose", "hours", "power", "pressure", "peroxide"}, needs: []string{"agent"}, agents: []string{"reactive"}},

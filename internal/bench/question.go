@@ -33,6 +33,7 @@ type Question struct {
 
 	Water, Goal           float64 // kg/kg
 	VolumeM3, FreeWaterM3 float64
+	RinseM3               float64 // fresh solvent over the cake of a salt
 	TempK                 float64
 	DoseKgPerM3, TimeS    float64
 	HeightM, HeaterW      float64

@@ -59,6 +59,7 @@ const zeroCelsius = 273.15
 
 var (
 	anyVolume      = limits{5e-5, 10, "0.05 L to 10000 L"}
+	anyRinse       = limits{0, 10, "0 mL to the volume"}
 	anyFree        = limits{0, 10, "0 mL to less than the volume"}
 	anyTemperature = limits{zeroCelsius - 20, zeroCelsius + 100, "-20 °C to 100 °C (-4 °F to 212 °F)"}
 	anyReceiver    = limits{zeroCelsius + 1, zeroCelsius + 40, "1 °C to 40 °C (34 °F to 104 °F); water would freeze in a colder one"}
@@ -133,6 +134,10 @@ func (r *reader) amounts() {
 	q.FreeWaterM3 = r.measure("free-water", quantity.Volume, anyFree, 0)
 	if q.FreeWaterM3 >= q.VolumeM3 {
 		r.mistake(fmt.Sprintf("--free-water: %s is as much as the volume (%s) or more", quantity.Quote(r.flags["free-water"]), quantity.FormatVolume(q.VolumeM3)), "")
+	}
+	q.RinseM3 = r.measure("rinse", quantity.Volume, anyRinse, 0)
+	if q.RinseM3 > q.VolumeM3 {
+		r.mistake(fmt.Sprintf("--rinse: %s is more than the volume (%s)", quantity.Quote(r.flags["rinse"]), quantity.FormatVolume(q.VolumeM3)), "")
 	}
 	q.ReagentMol = r.measure("reagent", quantity.Amount, anyReagent, math.NaN())
 	q.DoseKgPerM3 = math.NaN()

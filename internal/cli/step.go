@@ -36,6 +36,7 @@ func (p *program) step() *cli.Command {
 			&cli.StringFlag{Name: "activated", Usage: "`HISTORY` of the sieve, such as \"300 C closed hot\" or \"residual 1.5 g/100 g\""},
 			&cli.StringFlag{Name: "volume", Usage: "volume `V` of the lot (default: 1 L)"},
 			&cli.StringFlag{Name: "free-water", Usage: "volume `V` of free water beside the lot"},
+			&cli.StringFlag{Name: "rinse", Usage: "volume `V` of fresh solvent, as wet as the lot, that rinses the cake of a salt"},
 			&cli.StringFlag{Name: "height", Usage: "height `H` of the liquid (default: as deep as wide)"},
 			&cli.StringFlag{Name: "temperature", Usage: "temperature `T` of the lot and the room (default: the catalog's)"},
 			&cli.StringFlag{Name: "power", Usage: "power `P` of the heater (default: the still's own)"},

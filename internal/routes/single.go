@@ -17,6 +17,7 @@ type Asked struct {
 	Goal        float64 // kg/kg
 	DoseKgPerM3 float64
 	TimeS       float64
+	RinseM3     float64 // of a salt: fresh solvent, as wet as the lot, over the cake
 	Stirred     bool
 	Powder      bool // of a soak: not beads
 	Charges     int  // of a soak, one after the other, that make up the dose; 0: one

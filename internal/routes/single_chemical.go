@@ -14,6 +14,7 @@ import (
 func (c *Case) singleSalt(a Asked, s *Single) (err error) {
 	agent := c.Catalog.Agents[a.Agent]
 	rules, rig := c.saltRules(agent), c.saltRig(a.TimeS)
+	rig.RinseM3, rig.RinseWater = a.RinseM3, c.Feed.Water()
 	dose := rules.ClaimDoseKgPerM3
 	if given(a.DoseKgPerM3) {
 		dose = a.DoseKgPerM3
