@@ -123,17 +123,14 @@ func rising(f func(v float64) (value, slope float64), lo, hi, start float64) (v 
 // QuickSoak is a soak over weighed beads, in one charge or in several equal ones
 // after each other.
 type QuickSoak struct {
-	sorption *quickSorption
-	doseKg   float64 // of each charge
-	heldKg   float64 // of solvent, by each charge
-	timeS    float64 // of each charge
-	lots     float64 // over the charge, this one the last
-	charges  []quickCharge
-}
-
-type quickCharge struct {
-	rate float64 // K as planned, 1/s
-	made float64 // kg/kg, water that the solvent makes
+	sorption                     *quickSorption
+	bath                         *bath
+	charges                      int
+	doseKg                       float64 // of each charge
+	heldKg                       float64 // of solvent, by each charge
+	timeS                        float64 // of each charge
+	lots                         float64 // over the charge, this one the last
+	solventKgPerM3, waterKgPerM3 float64
 }
 
 // NewQuickSoak prepares a soak over n equal charges that make up doseKg, each for
@@ -145,13 +142,11 @@ func NewQuickSoak(m *thermo.Mixture, feed Lot, doseKg, timeS float64, n int, sor
 		return nil, err
 	}
 	n = max(1, n)
-	s := &QuickSoak{sorption: newQuickSorption(&b.sorption), doseKg: doseKg / float64(n), timeS: timeS, lots: b.lots()}
-	s.heldKg = s.doseKg * sorbent.HoldUpM3PerKg * m.Solvent.DensityKgPerM3.At(rig.TempK)
-	for range n {
-		dose := s.doseKg / LotVolume(m, feed, rig.TempK)
-		s.charges = append(s.charges, quickCharge{b.rate(dose), b.made(dose, timeS)})
-		feed.SolventKg -= s.heldKg
+	s := &QuickSoak{
+		sorption: newQuickSorption(&b.sorption), bath: b, charges: n, doseKg: doseKg / float64(n), timeS: timeS, lots: b.lots(),
+		solventKgPerM3: m.Solvent.DensityKgPerM3.At(rig.TempK), waterKgPerM3: m.Water.DensityKgPerM3.At(rig.TempK),
 	}
+	s.heldKg = s.doseKg * sorbent.HoldUpM3PerKg * s.solventKgPerM3
 	return s, nil
 }
 
@@ -161,15 +156,16 @@ func (s *QuickSoak) Water(water, solventKg float64, a *Aside) float64 {
 		return water
 	}
 	shift, charged := a.Shift.At(s.sorption.tempK), *a
-	for _, c := range s.charges {
+	for range s.charges {
 		perSorbent, ratio0 := solventKg/s.doseKg, water/(1-water)
+		dose := s.doseKg / (solventKg * (1/s.solventKgPerM3 + ratio0/s.waterKgPerM3)) // the same beads in a smaller lot are met more often
 		charged.ResidualKgPerKg = a.ResidualKgPerKg + (s.lots-1)*perSorbent*ratio0
 		ratio, ok := s.sorption.balance(perSorbent, ratio0, &charged, shift)
 		if !ok {
 			return water
 		}
 		eq := ratio / (1 + ratio)
-		water = eq + (water-eq)*math.Exp(-c.rate*a.Rate*s.timeS) + c.made
+		water = eq + (water-eq)*math.Exp(-s.bath.rate(dose)*a.Rate*s.timeS) + s.bath.made(dose, s.timeS)
 		solventKg = math.Max(leastSolventKg, solventKg-s.heldKg)
 	}
 	return water
