@@ -182,7 +182,7 @@ func (l *layout) cardTop(c *cardModel, row int) {
 	choices := fixed(c.helper(0, 0), row+1) + ":" + fixed(c.helper(0, len(c.list)-1), row+1)
 	c.index = fixed(cardChosen, row+1)
 	g.put(cardChosen, row+1, derived(fmt.Sprintf("IFERROR(MATCH(%s,%s,0),1)", at(cardText, row+1), choices), float64(c.chosen+1)).shown("0"))
-	g.limits = append(g.limits, limit{place: at(cardText, row+1), words: choices, prompt: "Choose the route that the card is for.", refuse: "Choose a route from the list."})
+	g.limits = append(g.limits, limit{place: at(cardText, row+1) + ":" + at(cardRouteEnd, row+1), words: choices, prompt: "Choose the route that the card is for.", refuse: "Choose a route from the list."})
 	state := fmt.Sprintf(`IF(%s>0,"Edited since the run: %s","Run of "&%s)`, changedName, runAgain, c.dateCell(row+2))
 	g.put(cardRouteEnd+1, row+1, cell{look: message, formula: state, value: "Run of " + l.runDate()})
 	g.put(cardChosen, row+2, text(plain, l.runDate()))

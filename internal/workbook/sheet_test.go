@@ -4,9 +4,10 @@ import (
 	"errors"
 	"regexp"
 	"slices"
-	"strconv"
 	"strings"
 	"testing"
+
+	"github.com/xuri/excelize/v2"
 )
 
 func TestEverySheetPrintsAndProtects(t *testing.T) {
@@ -79,18 +80,15 @@ func TestInputsAreUnlockedAndLimited(t *testing.T) {
 
 func cellsOf(t *testing.T, from, to string) (out []string) {
 	t.Helper()
-	m := regexp.MustCompile(`^([A-Z]+)([0-9]+)$`)
-	a, b := m.FindStringSubmatch(from), m.FindStringSubmatch(to)
-	if a == nil || b == nil || a[1] != b[1] {
-		t.Fatalf("range %s:%s", from, to)
-	}
-	first, err1 := strconv.Atoi(a[2])
-	last, err2 := strconv.Atoi(b[2])
+	firstColumn, firstRow, err1 := excelize.CellNameToCoordinates(from)
+	lastColumn, lastRow, err2 := excelize.CellNameToCoordinates(to)
 	if err := errors.Join(err1, err2); err != nil {
 		t.Fatal(err)
 	}
-	for r := first; r <= last; r++ {
-		out = append(out, a[1]+strconv.Itoa(r))
+	for r := firstRow; r <= lastRow; r++ {
+		for c := firstColumn; c <= lastColumn; c++ {
+			out = append(out, at(c, r))
+		}
 	}
 	return out
 }
