@@ -116,12 +116,13 @@ func (g *grid) draw(column, row, width, height int, name string, c *excelize.Cha
 }
 
 // roomForChart is the next free row. A page break goes before it where a chart of
-// that height would be cut by the end of the printed page.
+// that height would be cut by the end of the printed page, and before the first chart,
+// as a long table above it ends where the reader's heights of rows have it.
 func (g *grid) roomForChart(points float64) int {
 	row := max(g.last(), g.drawnTo()) + 2
 	page := 0.85 * printableHeight / g.scale() // readers differ in the scale and in the height of rows
 	titles := g.span(g.titles())
-	if used := g.pageUsed(row, page, titles); used+points > page && points < page-titles {
+	if used := g.pageUsed(row, page, titles); len(g.charts) == 0 || used+points > page && points < page-titles {
 		g.breaks = append(g.breaks, row-1) // the frame of the chart needs a little room above
 	}
 	return row

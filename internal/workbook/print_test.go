@@ -7,6 +7,7 @@ import (
 	"os/exec"
 	"path/filepath"
 	"regexp"
+	"slices"
 	"strings"
 	"testing"
 
@@ -168,5 +169,17 @@ func TestPagesInAnyTypeface(t *testing.T) {
 	}
 	if tried == 0 {
 		t.Skip("none of the typefaces is installed")
+	}
+}
+
+// No chart of Compare is cut by the end of a page: the first starts one.
+func TestTheFirstChartOfCompareStartsAPage(t *testing.T) {
+	for _, g := range layoutOf(t).grids {
+		if g.name != sheetCompare {
+			continue
+		}
+		if len(g.charts) == 0 || !slices.Contains(g.breaks, g.charts[0].row-1) {
+			t.Errorf("breaks at %v", g.breaks)
+		}
 	}
 }
