@@ -137,7 +137,7 @@ func (a *Answer) takenApart() string {
 
 func (a *Answer) asked() routes.Asked {
 	q := a.Question
-	return routes.Asked{Stage: q.stage(), Stages: q.Stages, Goal: q.Goal, DoseKgPerM3: q.DoseKgPerM3, TimeS: q.TimeS, RinseM3: q.RinseM3, Stirred: q.Stirred, Powder: q.Powder, Charges: q.Charges, ResidualLow: q.Activation.Low, ResidualHigh: q.Activation.High}
+	return routes.Asked{Stage: q.stage(), Stages: q.Stages, Receiver: q.receiverKey(), Goal: q.Goal, DoseKgPerM3: q.DoseKgPerM3, TimeS: q.TimeS, RinseM3: q.RinseM3, Stirred: q.Stirred, Powder: q.Powder, Charges: q.Charges, ResidualLow: q.Activation.Low, ResidualHigh: q.Activation.High}
 }
 
 func (a *Answer) adviseOven() {

@@ -160,11 +160,14 @@ func (a *Answer) wetter() error {
 
 // explained tells what has no physical sense from what physics refuses.
 func explained(k *routes.Case, q *Question, err error) error {
+	var wrong *routes.WrongReturn
 	switch {
 	case errors.Is(err, steps.ErrWetSieve) && q.Activation.Borrowed:
 		return &Refusal{Reason: err.Error(), Hint: fmt.Sprintf(`what %s holds after activation is not known and is taken from zeolites; where it is known, state it with --activated "residual ..."`, q.Agent.Plain())}
 	case errors.Is(err, routes.ErrWasteful):
 		return &Refusal{Reason: err.Error(), Hint: lessWasteful(k, q)}
+	case errors.As(err, &wrong):
+		return &Refusal{Reason: wrong.Error(), Hint: otherReceivers(k, wrong)}
 	case errors.Is(err, steps.ErrNoSense), errors.Is(err, routes.ErrAsked), errors.Is(err, steps.ErrNoColumn):
 		return &Mistake{Message: err.Error()}
 	case errors.Is(err, steps.ErrPreDry):

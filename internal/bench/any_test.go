@@ -34,6 +34,7 @@ var typed = map[string][]string{
 	"reagent":     {"0.5 mol", "0 mol"},
 	"carrier":     {"toluene", "cyclohexane", "DCM", "benzene", "mtbe", "water"},
 	"stages":      {"0", "3", "6", "20", "21", "-1"},
+	"returns":     {"light", "either", "heavy", "receiver-assembled", "receiver-light", "still-2l", "up", ""},
 	"charges":     {"1", "2", "5", "0", "many"},
 }
 

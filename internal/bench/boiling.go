@@ -41,8 +41,17 @@ func (a *Answer) adviseReceiver() {
 	a.tell("reading", "repeatable to 0.1 mL, which is %s in this charge: a smaller content cannot be told from the receiver, only by a test", quantity.FormatWater(proved))
 	a.tell("reflux", "%s h%s%s", quantity.Significant(a.Figure("reflux, each charge"), 3), ofEach(charges), a.heldOn())
 	if a.Returns != "" {
-		a.tell("returns", "the %s layer goes back to the pot, the aqueous one is kept", a.Returns)
+		a.tell("returns", "the %s layer goes back to the pot, the aqueous one is kept%s", a.Returns, a.receiver())
 	}
+}
+
+// receiver names what a trap is run with, and what it holds before anything goes back.
+func (a *Answer) receiver() string {
+	piece := a.Case.Catalog.Apparatus[a.Apparatus]
+	if piece == nil {
+		return ""
+	}
+	return fmt.Sprintf("; the %s holds %s before that", piece.Name, quantity.FormatVolume(piece.FillVolume.SI))
 }
 
 // leastSeenML is less aqueous layer than a receiver shows: half of the 0.1 mL to

@@ -20,7 +20,7 @@ var common = []string{"solvent", "water", "volume", "temperature", "reagent"}
 
 var uses = map[steps.Kind]use{
 	steps.Settle:   {takes: []string{"free-water"}},
-	steps.Trap:     {takes: []string{"to", "free-water", "power", "receiver", "pressure", "peroxide", "hours", "carrier", "dose", "stages"}},
+	steps.Trap:     {takes: []string{"to", "free-water", "power", "receiver", "pressure", "peroxide", "hours", "carrier", "dose", "stages", "returns"}},
 	steps.Forerun:  {takes: []string{"to", "free-water", "power", "pressure", "peroxide", "stages"}},
 	steps.Salt:     {takes: []string{"agent", "to", "dose", "hours", "free-water", "rinse"}, needs: []string{"agent"}, agents: []string{"salt"}},
 	steps.Soak:     {takes: []string{"agent", "to", "dose", "hours", "stirred", "activated", "height", "free-water", "charges", "powder"}, needs: []string{"agent"}, agents: []string{"sieve", "oxide"}},
@@ -90,6 +90,8 @@ func why(k steps.Kind, name string) string {
 		return ": free water is let settle first"
 	case name == "to" && k == steps.Settle:
 		return ": it leaves the solvent saturated"
+	case name == "returns" && k == steps.Forerun:
+		return ": nothing goes back to the pot"
 	}
 	return ""
 }

@@ -38,6 +38,7 @@ type Question struct {
 	DoseKgPerM3, TimeS    float64
 	HeightM, HeaterW      float64
 	ReceiverK, PressurePa float64
+	Receiver              *catalog.Apparatus // of a trap; nil: the first that fits
 	PeroxideKgPerM3       float64
 	ReagentMol            float64 // used in the whole volume
 	Activation            Activation

@@ -37,6 +37,7 @@ func Read(c *catalog.Catalog, req Request) (*Question, error) {
 	r.agent()
 	r.carrier()
 	r.stages()
+	r.returns()
 	r.amounts()
 	if req.Solvent != nil {
 		r.contents()

@@ -41,6 +41,7 @@ func (p *program) step() *cli.Command {
 			&cli.StringFlag{Name: "temperature", Usage: "temperature `T` of the lot and the room (default: the catalog's)"},
 			&cli.StringFlag{Name: "power", Usage: "power `P` of the heater (default: the still's own)"},
 			&cli.StringFlag{Name: "receiver", Usage: "temperature `T` of the trap's receiver (default: the catalog's)"},
+			&cli.StringFlag{Name: "returns", Usage: "the layer `L` that the trap's receiver can give back: light, heavy or either; or a receiver's key"},
 			&cli.StringFlag{Name: "pressure", Usage: "absolute pressure `P`, 1 to 110 kPa, in hPa, kPa, mbar or mmHg (default: the catalog's)"},
 			&cli.StringFlag{Name: "peroxide", Usage: "peroxide reading `C`, wanted before a peroxide former is heated"},
 			&cli.StringFlag{Name: "reagent", Usage: "amount `N` of a reagent in the lot: water in mol % of it"},

@@ -8,6 +8,7 @@ import (
 
 	"parch/catalog"
 	"parch/internal/steps"
+	"parch/internal/thermo"
 )
 
 // pieces returns the apparatus of one kind, owned ones first, then by key.
@@ -71,14 +72,31 @@ func (c *Case) receiver(trap *steps.TrapEquilibrium, key string) (*catalog.Appar
 		}
 	}
 	l := trap.Floor.Layers
-	needs := fmt.Sprintf("%s needs a %s return (organic layer %.0f, aqueous %.0f kg/m3)", c.Solvent.Name, trap.Floor.Return, l.OrganicKgPerM3, l.AqueousKgPerM3)
+	needs := needsReturn(c.Solvent.Name, trap.Floor.Return, l.OrganicKgPerM3, l.AqueousKgPerM3)
+	if key == "" {
+		return nil, fmt.Errorf("%s, and no receiver of the catalog returns that layer", needs)
+	}
+	return nil, c.wrongReceiver(needs, key)
+}
+
+// needsReturn says which layer goes back, from the densities of both.
+func needsReturn(what string, layer thermo.Returns, organicKgPerM3, aqueousKgPerM3 float64) string {
+	return fmt.Sprintf("%s needs a %s return (organic layer %.0f, aqueous %.0f kg/m3)", what, layer, organicKgPerM3, aqueousKgPerM3)
+}
+
+// WrongReturn is a receiver that gives back the other layer than is needed.
+type WrongReturn struct{ Needs, Receiver, Returns string }
+
+func (w *WrongReturn) Error() string {
+	return fmt.Sprintf("%s, %s returns the %s layer", w.Needs, w.Receiver, w.Returns)
+}
+
+// wrongReceiver says why the receiver of that key is not used.
+func (c *Case) wrongReceiver(needs, key string) error {
 	if a := c.Catalog.Apparatus[key]; a != nil && a.Kind == "receiver" {
-		return nil, fmt.Errorf("%w: %s, %s returns the %s layer", ErrSettings, needs, key, a.Returns)
+		return fmt.Errorf("%w: %w", ErrSettings, &WrongReturn{needs, key, a.Returns})
 	}
-	if key != "" {
-		return nil, fmt.Errorf("%w: %q is not a receiver of the catalog", ErrSettings, key)
-	}
-	return nil, fmt.Errorf("%s, and no receiver of the catalog returns that layer", needs)
+	return fmt.Errorf("%w: %q is not a receiver of the catalog", ErrSettings, key)
 }
 
 // Receivers are the keys of the receivers that a trap on this lot may have, with a
@@ -87,7 +105,7 @@ func (c *Case) Receivers(carrier string) (keys []string) {
 	var all []*catalog.Apparatus
 	switch {
 	case carrier != "":
-		all = c.receiversFor(string(c.carrierKnown(carrier).returns))
+		all = c.receiversFor(string(c.carrierKnown(carrier).layers.Return))
 	case c.Trap != nil:
 		all = c.receivers(c.Trap)
 	}
@@ -106,7 +124,7 @@ func (c *Case) MadeAndAssembled(carrier string) (made, assembled string) {
 	want := ""
 	switch {
 	case carrier != "":
-		want = string(c.carrierKnown(carrier).returns)
+		want = string(c.carrierKnown(carrier).layers.Return)
 	case c.Trap != nil:
 		want = string(c.Trap.Floor.Return)
 	}

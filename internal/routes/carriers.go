@@ -88,9 +88,9 @@ func (c *Case) pairSource(key string) string {
 
 // carrierEquilibrium is what was found for a carrier.
 type carrierEquilibrium struct {
-	eq      *steps.CarrierEquilibrium
-	returns thermo.Returns // of the layers of its azeotrope; None: not known
-	err     error
+	eq     *steps.CarrierEquilibrium
+	layers thermo.TernaryLayers // of its azeotrope; a Return of None: not known
+	err    error
 }
 
 // carrierAt is the equilibrium of a carrier with the receiver as cold as the site has it.
@@ -102,7 +102,7 @@ func (c *Case) carrierAt(key string) (*steps.CarrierEquilibrium, error) {
 func (c *Case) carrierKnown(key string) carrierEquilibrium {
 	return c.site.carrier(key, func() (k carrierEquilibrium) {
 		if k.eq, k.err = c.newCarrier(key); k.err == nil {
-			k.returns = k.eq.Returns()
+			k.layers = k.eq.Layers()
 		}
 		return k
 	})
@@ -131,16 +131,17 @@ func (c *Case) newCarrier(key string) (*steps.CarrierEquilibrium, error) {
 // carrierReceiver is the named receiver, or the first, owned ones before others, that
 // returns the layer of the carrier's azeotrope.
 func (c *Case) carrierReceiver(key, receiver string) (*catalog.Apparatus, error) {
-	want := string(c.carrierKnown(key).returns)
-	for _, a := range c.receiversFor(want) {
+	l := c.carrierKnown(key).layers
+	for _, a := range c.receiversFor(string(l.Return)) {
 		if receiver == "" || a.Key == receiver {
 			return a, nil
 		}
 	}
 	if receiver != "" {
-		return nil, fmt.Errorf("%w: with %s the %s layer goes back, and %q does not return it", ErrSettings, key, want, receiver)
+		with := fmt.Sprintf("with %s %s", c.Catalog.Solvents[key].Name, c.Solvent.Name)
+		return nil, c.wrongReceiver(needsReturn(with, l.Return, l.OrganicKgPerM3, l.AqueousKgPerM3), receiver)
 	}
-	return nil, fmt.Errorf("%w: no receiver returns the %s layer", steps.ErrNoCarrier, want)
+	return nil, fmt.Errorf("%w: no receiver returns the %s layer", steps.ErrNoCarrier, l.Return)
 }
 
 // CarrierDoses are the doses that a search tries, in kg per kg of solvent.

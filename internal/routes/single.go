@@ -19,9 +19,10 @@ type Asked struct {
 	TimeS       float64
 	RinseM3     float64 // of a salt: fresh solvent, as wet as the lot, over the cake
 	Stirred     bool
-	Powder      bool // of a soak: not beads
-	Charges     int  // of a soak, one after the other, that make up the dose; 0: one
-	Stages      int  // of the column of a forerun, or of a trap with a carrier
+	Powder      bool   // of a soak: not beads
+	Charges     int    // of a soak, one after the other, that make up the dose; 0: one
+	Stages      int    // of the column of a forerun, or of a trap with a carrier
+	Receiver    string // of a trap, by its key; "": the first that fits
 
 	ResidualLow, ResidualHigh float64 // kg/kg, the band of the lot's residual loading
 }

@@ -14,7 +14,7 @@ func (c *Case) singleTrap(a Asked, s *Single) (err error) {
 	if a.Carrier != "" {
 		return c.singleCarrier(a, s)
 	}
-	asked := choice{longestS: orZero(a.TimeS), watched: true}
+	asked := choice{longestS: orZero(a.TimeS), watched: true, receiver: a.Receiver}
 	s.Outcome, err = c.boilOut(c.Feed, orZero(a.Goal), asked)
 	switch {
 	case err != nil:
@@ -59,7 +59,7 @@ func (c *Case) singleCarrier(a Asked, s *Single) error {
 	if err != nil {
 		return err
 	}
-	receiver, err := c.carrierReceiver(a.Carrier, "")
+	receiver, err := c.carrierReceiver(a.Carrier, a.Receiver)
 	if err != nil {
 		return err
 	}

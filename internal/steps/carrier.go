@@ -98,14 +98,14 @@ func NewCarrierEquilibrium(model *thermo.Ternary, organic *thermo.OrganicLayer, 
 	return eq, nil
 }
 
-// Returns is the layer of the azeotrope's condensate that goes back to the pot, or
-// None where it does not split or settle.
-func (eq *CarrierEquilibrium) Returns() thermo.Returns {
+// Layers are those of the azeotrope's condensate; a Return of None where it does not
+// split or settle.
+func (eq *CarrierEquilibrium) Layers() thermo.TernaryLayers {
 	split, err := eq.Model.Flash(eq.Azeotrope.Y, eq.ReceiverK)
 	if err != nil {
-		return thermo.None
+		return thermo.TernaryLayers{Return: thermo.None}
 	}
-	return eq.Model.Settle(split, eq.ReceiverK).Return
+	return eq.Model.Settle(split, eq.ReceiverK)
 }
 
 // volatility is gamma Psat/P of a trace of carrier in the boiling dry solvent.
