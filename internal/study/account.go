@@ -102,8 +102,13 @@ func (r *Report) Priced() *Report {
 				l.Routes = append(l.Routes, route)
 				continue
 			}
+			if route.Meets() {
+				l.NoPrice = append(l.NoPrice, route.Bill.NoPrice...)
+			}
 			l.Excluded = append(l.Excluded, routes.Excluded{ID: route.ID, Reason: "no price for " + strings.Join(route.Bill.NoPrice, ", ") + ": computed in quantities only"})
 		}
+		slices.Sort(l.NoPrice)
+		l.NoPrice = slices.Compact(l.NoPrice)
 		priced.Lots[i] = l
 	}
 	return &priced

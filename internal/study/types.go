@@ -48,6 +48,7 @@ type Lot struct {
 	Routes      []Route       // ranked first, then those that miss, nearest first
 	Follow      routes.Follow // for readers that follow the routes by closed forms; empty where they cannot
 	Excluded    []routes.Excluded
+	NoPrice     []string // items without which Priced leaves out routes that reach the limit, sorted
 	BreakEvens  []BreakEven
 	Front       []FrontPoint // routes that reach the limit and have their prices
 	NearMisses  []string     // where no route reaches the limit: how near each constraint is missed

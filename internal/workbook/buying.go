@@ -44,10 +44,31 @@ func (l *layout) buying() *grid {
 	for i := range list {
 		row = l.purchaseRows(g, row, &list[i], &total)
 	}
-	g.put(2, row, text(block, "All orders"))
-	g.put(buyCost, row, derived(fmt.Sprintf("SUM(%s:%s)", at(buyCost, first), at(buyCost, row-1)), total).in(l.currency()).shown(moneyFormat))
+	l.ordersTotal(g, rows{first, row - 1}, total)
 	l.orderNotes(g, list)
 	return g
+}
+
+// ordersTotal adds up what the orders cost, as far as they have a price.
+func (l *layout) ordersTotal(g *grid, ordered rows, total float64) {
+	row, orders, open := ordered.last+1, 0, 0
+	for _, p := range l.report.Buying.Purchases {
+		orders += len(p.Orders)
+		if !p.Priced && p.ToBuy > 0 {
+			open++
+		}
+	}
+	name := "All orders"
+	if open > 0 {
+		name = "All orders that have a price"
+	}
+	g.put(2, row, text(block, name))
+	if orders == 0 {
+		g.put(buyCost, row, text(program, "none"))
+		return
+	}
+	costs := at(buyCost, ordered.first) + ":" + at(buyCost, ordered.last)
+	g.put(buyCost, row, derived("SUM("+costs+")", total).in(l.currency()).shown(moneyFormat))
 }
 
 // purchaseRows writes a row for each order of an item, or one where there is none.

@@ -1,9 +1,6 @@
 package workbook
 
-import (
-	"fmt"
-	"math"
-)
+import "fmt"
 
 // Columns of Compare.
 const (
@@ -70,7 +67,7 @@ func (l *layout) compareRow(g *grid, i int) {
 		place = float64(r.rank)
 	}
 	carbon := blank(formula) // missing is no zero
-	if !math.IsNaN(r.Run.CO2eKg) && r.lot.Follow.Lot != nil {
+	if l.carbonKnown(r) {
 		carbon = costs(litreCarbon, litre, r.Run.CO2eKg).in("kg CO2e").shown(decimals(2))
 	}
 	rankAt := on(sheetCosts, at(rankPlace, rank))

@@ -3,6 +3,7 @@ package workbook
 import (
 	"fmt"
 	"math"
+	"slices"
 
 	"parch/internal/steps"
 )
@@ -234,10 +235,25 @@ func (l *layout) litreBlock(g *grid) {
 			live(sum(quantities, items, "technician"), "h", 3),
 			live(sum(quantities, items, "cooling-water"), "m3", 4),
 			live(sum(quantities, heads, headNames[steps.SolventLost]), "L", 3),
-			live(sum(l.lineRows.column(billCarbon)), "kg CO2e", 2),
+			l.carbonCell(r, sum(l.lineRows.column(billCarbon))),
 			number(float(r.Bill.PerBatch), l.currency()).shown(exactMoney), number(float(r.Bill.PerLitre), l.money("L")).shown(exactMoney))...)
 	}
 	l.noRoutes(g, first, len(l.routes))
+}
+
+// carbonCell is what a batch emits by a formula, or the words that say that a factor
+// is missing: what is missing is no zero.
+func (l *layout) carbonCell(r *routeModel, sum string) cell {
+	if !l.carbonKnown(r) {
+		return text(program, "not known")
+	}
+	return cell{look: formula, formula: sum, unit: "kg CO2e", format: decimals(2)}
+}
+
+// carbonKnown reports whether the lines of a route have their factors and one of them
+// emits something.
+func (l *layout) carbonKnown(r *routeModel) bool {
+	return !math.IsNaN(r.Run.CO2eKg) && slices.ContainsFunc(r.lines, func(line lineModel) bool { return l.carbonOf(r, line) > 0 })
 }
 
 func (l *layout) rankBlock(g *grid) {

@@ -103,12 +103,9 @@ func (l *layout) pickRow(g *grid, row int, r *routeModel, picks []pick) {
 	for _, p := range picks {
 		v := any("")
 		if r != nil {
-			x := p.value(r)
-			if math.IsNaN(x) {
-				g.put(p.column, row, text(program, notDrawn))
-				continue
+			if v = p.value(r); math.IsNaN(p.value(r)) {
+				v = notDrawn
 			}
-			v = x
 		}
 		g.put(p.column, row, derived(fmt.Sprintf(`IF($L%d=0,"",INDEX(%s,$L%d))`, row, p.from(p.source), row), v).in(p.unit).shown(p.format))
 	}

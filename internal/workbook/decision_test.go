@@ -136,3 +136,22 @@ func checkLetters(t *testing.T, pdf string, page int, g *grid) {
 		t.Errorf("letters of %.2f points", 10*scale)
 	}
 }
+
+// Where routes reach the limit and prices are missing, the page names the prices that
+// are asked for.
+func TestDecisionNamesMissingPrices(t *testing.T) {
+	if testing.Short() {
+		t.Skip("runs a job")
+	}
+	for _, k := range everyKind(t) {
+		if k.name != "no prices" {
+			continue
+		}
+		for _, c := range k.book.cells[sheetDecision] {
+			if strings.HasPrefix(c.text, "Routes reach the limit") && strings.Contains(c.text, "electricity") && strings.Contains(c.text, "technician") {
+				return
+			}
+		}
+		t.Error("the page does not say that prices are missing")
+	}
+}

@@ -3,6 +3,8 @@ package workbook
 import (
 	"fmt"
 	"io"
+	"regexp"
+	"strconv"
 	"strings"
 	"testing"
 
@@ -44,13 +46,33 @@ func TestManyLots(t *testing.T) {
 	if n := len(charts(t, b)); n > 4*mostLotsDrawn+40 { // one on each card
 		t.Errorf("%d charts", n)
 	}
-	said := false
+	lotsOnDecision(t, b, 40)
+}
+
+// Decision holds every lot or counts it among those left out.
+func TestDecisionOfMoreLotsThanFit(t *testing.T) {
+	if left := lotsOnDecision(t, readBook(t, written(t, many(70, 1))), 70); left < 70-mostInLines {
+		t.Errorf("%d lots are said to be left out", left)
+	}
+}
+
+var leftOut = regexp.MustCompile(`^(\d+) lots more do not fit on this page`)
+
+func lotsOnDecision(t *testing.T, b *book, lots int) (left int) {
+	t.Helper()
+	there := map[string]bool{}
 	for _, c := range b.cells[sheetDecision] {
-		said = said || strings.Contains(c.text, " lots more do not fit on this page")
+		if strings.HasPrefix(c.text, "lot ") {
+			there[c.text] = true
+		}
+		if m := leftOut.FindStringSubmatch(c.text); m != nil {
+			left, _ = strconv.Atoi(m[1])
+		}
 	}
-	if !said {
-		t.Error("Decision does not say which lots it leaves out")
+	if len(there)+left != lots {
+		t.Errorf("Decision holds %d of %d lots and says that %d are left out", len(there), lots, left)
 	}
+	return left
 }
 
 func BenchmarkManyLots(b *testing.B) {

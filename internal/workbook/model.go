@@ -128,6 +128,9 @@ func newRoute(no int, lot *lotModel, route study.Route, book costs.Book) (*route
 		return r, fmt.Errorf("lot %q, route %s delivers no solvent", lot.Job.Name, route.ID)
 	}
 	r.stages = stagesOf(r, lot.Follow.Steps[route.ID])
+	if !route.Bill.Priced() {
+		return r, fmt.Errorf("lot %q, route %s: no price for %s", lot.Job.Name, route.ID, strings.Join(route.Bill.NoPrice, ", "))
+	}
 	for _, line := range route.Bill.Lines {
 		l, err := newLine(line, lot.batches, book)
 		if err != nil {

@@ -26,6 +26,14 @@ const notDrawn = "not drawn"
 // seen is a value of the program that nothing is computed from.
 func seen(v float64, unit, format string) cell { return finite(cutTo(v, shownDigits), unit, format) }
 
+// drawn is a value of the draws, or the words that say that there is none.
+func drawn(v float64, unit, format string) cell {
+	if math.IsNaN(v) {
+		return text(program, notDrawn)
+	}
+	return seen(v, unit, format)
+}
+
 func (l *layout) ranges() *grid {
 	g := newGrid(sheetRanges, "How sure the figures are, what moves them, and where the choice turns. Values of the program; ranks and the cost against litres a month follow the prices.",
 		tabResult, checkCell(), 20, 27, 10.5, 12, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 8, 8)
@@ -105,19 +113,19 @@ func (r *routeModel) sure(assurance float64) string {
 
 func (l *layout) rangeRow(g *grid, i int, r *routeModel) {
 	row := l.rangeRows.at(i)
-	g.putRow(row, text(words, r.lot.Job.Name), text(words, r.ID), seen(r.chance(), "%", "0"),
+	g.putRow(row, text(words, r.lot.Job.Name), text(words, r.ID), drawn(r.chance(), "%", "0"),
 		text(program, r.sure(l.report.Job.Assurance)))
 	units, formats := [3]string{"mg/kg", l.money("L"), "h"}, [3]string{decimals(2), moneyFormat, decimals(2)}
 	for k, b := range r.bands() {
 		for j, v := range []float64{b.Low, b.Median, b.High} {
-			g.put(rangeWater+3*k+j, row, seen(v, units[k], formats[k]))
+			g.put(rangeWater+3*k+j, row, drawn(v, units[k], formats[k]))
 		}
 	}
 	share := math.NaN()
 	if r.Range != nil {
 		share = 100 * r.Range.CheapestShare
 	}
-	g.put(rangeShare, row, seen(share, "%", "0"))
+	g.put(rangeShare, row, drawn(share, "%", "0"))
 	var rank any = ""
 	if r.rank > 0 && r.sure(l.report.Job.Assurance) != "no" {
 		rank = float64(r.rank)

@@ -66,6 +66,8 @@ func noVerdict(lot *lotModel) string {
 	switch {
 	case lot.NothingToDo != "":
 		return capital(lot.NothingToDo) + "."
+	case len(lot.routes) == 0 && len(lot.NoPrice) > 0:
+		return "Routes reach the limit, but none has all its prices: no price for " + strings.Join(lot.NoPrice, ", ") + ". Give those in the job and run parch again."
 	case len(lot.routes) == 0:
 		return "No route can be offered; the reasons stand on Compare."
 	case lot.CannotShow != "":

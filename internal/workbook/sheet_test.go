@@ -11,7 +11,12 @@ import (
 )
 
 func TestEverySheetPrintsAndProtects(t *testing.T) {
-	b := readBook(t, written(t, demo(t)))
+	for _, k := range everyKind(t) {
+		t.Run(k.name, func(t *testing.T) { everySheetPrintsAndProtects(t, k.book) })
+	}
+}
+
+func everySheetPrintsAndProtects(t *testing.T, b *book) {
 	for _, sheet := range b.sheets {
 		part := string(b.parts[b.part[sheet]])
 		tall, way := "0", "landscape"
@@ -48,7 +53,13 @@ func TestEverySheetPrintsAndProtects(t *testing.T) {
 
 // Exactly the inputs are unlocked, and each has a limit with a message.
 func TestInputsAreUnlockedAndLimited(t *testing.T) {
-	for _, g := range layoutOf(t).grids {
+	for _, k := range everyKind(t) {
+		t.Run(k.name, func(t *testing.T) { inputsAreUnlockedAndLimited(t, k.layout) })
+	}
+}
+
+func inputsAreUnlockedAndLimited(t *testing.T, l *layout) {
+	for _, g := range l.grids {
 		limited := map[string]bool{}
 		for _, l := range g.limits {
 			if l.prompt == "" || l.refuse == "" || len(l.prompt) > 255 || len(l.refuse) > 225 {
@@ -72,7 +83,7 @@ func TestInputsAreUnlockedAndLimited(t *testing.T) {
 				}
 			}
 		}
-		if (g.name == sheetInputs || g.name == sheetPrices) && inputs < 5 {
+		if (g.name == sheetInputs || g.name == sheetPrices && len(l.prices) > 0) && inputs < 5 {
 			t.Errorf("%s has %d inputs", g.name, inputs)
 		}
 	}
@@ -111,7 +122,13 @@ func TestPropertiesHaveNoClock(t *testing.T) {
 // Numbers never stand in a merged cell: merges are for running text only, which on a
 // card follows the chosen route and on Decision the route that leads.
 func TestMergesHoldText(t *testing.T) {
-	for _, g := range layoutOf(t).grids {
+	for _, k := range everyKind(t) {
+		t.Run(k.name, func(t *testing.T) { mergesHoldText(t, k.layout) })
+	}
+}
+
+func mergesHoldText(t *testing.T, l *layout) {
+	for _, g := range l.grids {
 		for _, m := range g.merged {
 			if m.first <= g.printColumns && m.last > g.printColumns {
 				t.Errorf("%s!%s runs over the edge of the printed page", g.name, at(m.first, m.row))
@@ -133,7 +150,12 @@ var sheetOrder = []string{"sheetPr", "dimension", "sheetViews", "sheetFormatPr",
 	"conditionalFormatting", "dataValidations", "hyperlinks", "pageMargins", "pageSetup", "headerFooter", "rowBreaks", "colBreaks", "drawing"}
 
 func TestSheetsFollowTheSchema(t *testing.T) {
-	b := readBook(t, written(t, demo(t)))
+	for _, k := range everyKind(t) {
+		t.Run(k.name, func(t *testing.T) { sheetsFollowTheSchema(t, k.book) })
+	}
+}
+
+func sheetsFollowTheSchema(t *testing.T, b *book) {
 	for _, sheet := range b.sheets {
 		var e element
 		b.decode(t, b.part[sheet], &e)
