@@ -253,6 +253,13 @@ type Run struct {
 	WasteKg         float64
 	CO2eKg          float64
 	Warnings        []string
+	Shortened       *Shortened // nil: no longer run was passed over
+}
+
+// Shortened tells of a longer run that would be better by next to nothing.
+type Shortened struct {
+	HoursTotal float64
+	Saves      float64 // share of the objective
 }
 
 // StageUse is a use and the 1-based place of its stage (0: the whole route).

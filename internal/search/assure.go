@@ -23,8 +23,8 @@ const (
 // tuned so that with everything at its typical value it just ends at the limit, so
 // half of the draws may miss it. Its last step is therefore sized for an aim of its
 // own under the limit, and a last soak may take another stand and serve fewer lots: of all that
-// can be assured the best by the objective, the hand-overs before it kept. Where
-// nothing helps the run comes back as it was.
+// can be assured the best by the objective, or the shortest of those that are as good, the
+// hand-overs before it kept. Where nothing helps the run comes back as it was.
 func (t *Tuner) Assured(r routes.Route, run routes.Run, a Assurance) (routes.Run, error) {
 	sure, err := a.Sure(&run)
 	if err != nil || sure {
@@ -39,7 +39,7 @@ func (t *Tuner) Assured(r routes.Route, run routes.Run, a Assurance) (routes.Run
 			return run, err
 		}
 	}
-	best := trial{run: run, score: math.Inf(1)}
+	best := trial{score: math.Inf(1)}
 	for _, start := range starts { // best first: none comes out better than it went in
 		if start.score >= best.score {
 			break
@@ -51,6 +51,9 @@ func (t *Tuner) Assured(r routes.Route, run routes.Run, a Assurance) (routes.Run
 		if ok && found.score < best.score {
 			best = found
 		}
+	}
+	if best, err = t.soonerSure(r, starts, best, a); err != nil || best.run.Route == nil {
+		return run, err
 	}
 	return best.run, nil
 }

@@ -14,6 +14,8 @@ type axis struct {
 	count int
 	set   func(s *routes.Settings, value int)
 	late  bool
+	hours []float64 // of each value, where they are stands; else nil
+	soak  int       // the 1-based place of the soak it belongs to; 0: of another step
 }
 
 // spot is one choice of every free setting: the place on each axis, and ln(water)
@@ -71,6 +73,7 @@ func (t *Tuner) axes(r routes.Route, stands []stand) (all []axis) {
 	for i, stage := range r {
 		k := count[stage.Kind]
 		count[stage.Kind]++
+		before := len(all)
 		switch stage.Kind {
 		case steps.Trap:
 			if stage.Carrier != "" { // as cold as can be: each run takes its time
@@ -88,9 +91,7 @@ func (t *Tuner) axes(r routes.Route, stands []stand) (all []axis) {
 				all = append(all, later(oneOf(pressures, func(s *routes.Settings, kPa float64) { s.PressureKPa[k] = kPa })))
 			}
 		case steps.Soak:
-			all = append(all, oneOf(stands, func(s *routes.Settings, v stand) { s.SoakHours[k], s.Stirred[k] = v.hours, v.stirred }))
-		}
-		if stage.Kind == steps.Soak {
+			all = append(all, standsOf(stands, k))
 			all = append(all, later(oneOf(t.lotsOverCharge(), func(s *routes.Settings, n int) { setLotsOverCharge(s, k, n) })))
 			all = append(all, later(oneOf(chargesTried, func(s *routes.Settings, n int) { setCharges(s, k, n) })))
 		}
@@ -98,6 +99,11 @@ func (t *Tuner) axes(r routes.Route, stands []stand) (all []axis) {
 			bed := beds
 			beds++
 			all = append(all, oneOf(t.afterUse(), func(s *routes.Settings, after string) { s.Sieve[bed] = after }))
+		}
+		if stage.Kind == steps.Soak {
+			for n := before; n < len(all); n++ {
+				all[n].soak = i + 1
+			}
 		}
 	}
 	return all
@@ -112,6 +118,14 @@ func (t *Tuner) receivers(carrier string) []string {
 
 func oneOf[T any](values []T, set func(*routes.Settings, T)) axis {
 	return axis{count: len(values), set: func(s *routes.Settings, i int) { set(s, values[i]) }}
+}
+
+func standsOf(stands []stand, soak int) axis {
+	a := oneOf(stands, func(s *routes.Settings, v stand) { s.SoakHours[soak], s.Stirred[soak] = v.hours, v.stirred })
+	for _, v := range stands {
+		a.hours = append(a.hours, v.hours)
+	}
+	return a
 }
 
 func later(a axis) axis {

@@ -122,7 +122,9 @@ func (t *Tuner) TuneFrom(r routes.Route, warm *routes.Settings) (routes.Run, err
 		return routes.Run{}, g.last
 	}
 	if !t.Exact {
+		lowest := g.best.score
 		g.round()
+		g.shorter(lowest)
 	}
 	return g.best.run, g.failed
 }
