@@ -72,10 +72,11 @@ func (t *Tuner) otherStands(r routes.Route, run routes.Run) ([]trial, error) {
 	var all []trial
 	last := len(run.Settings.SoakHours) - 1
 	for _, stand := range stands {
-		for _, lots := range t.fewerLots(run.Settings, last) {
+		for _, m := range t.meetings() {
 			s := cloned(run.Settings)
 			s.SoakHours[last], s.Stirred[last] = stand.hours, stand.stirred
-			setLotsOverCharge(&s, last, lots)
+			setLotsOverCharge(&s, last, m.lots)
+			setCharges(&s, last, m.charges)
 			other, err := t.Run(r, s)
 			if err == nil {
 				err = t.inTime(&other)

@@ -20,20 +20,17 @@ func (t *Tuner) lotsOverCharge() []int {
 	return slices.DeleteFunc(slices.Clone(lotsTried), func(n int) bool { return n > 1 && float64(n) > most })
 }
 
-// fewerLots are the numbers of lots over the charge of a soak: as many as it has, half
-// way down, and one, as a charge that serves fewer is surer.
-func (t *Tuner) fewerLots(s routes.Settings, soak int) (all []int) {
-	most := 1
-	if soak < len(s.LotsOverCharge) {
-		most = s.LotsOverCharge[soak]
+// meeting is how the sieve of a soak meets the lots: so many over a charge, or so many
+// charges for one lot.
+type meeting struct{ lots, charges int }
+
+// meetings are all of them: several charges in sequence serve one lot.
+func (t *Tuner) meetings() (all []meeting) {
+	for _, lots := range t.lotsOverCharge() {
+		all = append(all, meeting{lots, 1})
 	}
-	for _, n := range t.lotsOverCharge() {
-		if n <= most {
-			all = append(all, n)
-		}
-	}
-	if len(all) > 2 {
-		all = []int{all[0], all[len(all)/2], all[len(all)-1]}
+	for _, charges := range chargesTried[1:] {
+		all = append(all, meeting{1, charges})
 	}
 	return all
 }
