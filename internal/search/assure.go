@@ -44,7 +44,7 @@ func (t *Tuner) Assured(r routes.Route, run routes.Run, a Assurance) (routes.Run
 		if start.score >= best.score {
 			break
 		}
-		found, ok, err := t.lifted(r, start, a)
+		found, ok, err := t.lifted(r, start, a, best.score)
 		if err != nil {
 			return run, err
 		}
@@ -103,8 +103,9 @@ func (t *Tuner) otherStands(r routes.Route, run routes.Run) ([]trial, error) {
 	return all, nil
 }
 
-// lifted finds the highest aim at which a run is sure enough.
-func (t *Tuner) lifted(r routes.Route, start trial, a Assurance) (trial, bool, error) {
+// lifted finds the highest aim at which a run is sure enough. The lower the aim, the
+// worse the score: it is left where an aim that is not sure enough scores above most.
+func (t *Tuner) lifted(r routes.Route, start trial, a Assurance, most float64) (trial, bool, error) {
 	at := func(aim float64) (found trial, sure bool, err error) {
 		s := cloned(start.run.Settings)
 		s.AimMgPerKg = aim
@@ -139,9 +140,12 @@ func (t *Tuner) lifted(r routes.Route, start trial, a Assurance) (trial, bool, e
 		if err != nil {
 			return trial{}, false, err
 		}
-		if sure {
+		switch {
+		case sure:
 			best, low = found, aim
-		} else {
+		case found.score > most:
+			return trial{}, false, nil
+		default:
 			high = aim
 		}
 	}

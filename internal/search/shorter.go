@@ -91,7 +91,7 @@ func (t *Tuner) soonerSure(r routes.Route, starts []trial, best trial, a Assuran
 		if !tied(start.score, best.score) {
 			continue
 		}
-		found, ok, err := t.lifted(r, start, a)
+		found, ok, err := t.lifted(r, start, a, best.score*(1+Tie))
 		if err != nil {
 			return best, err
 		}
