@@ -39,12 +39,13 @@ func (t *Tuner) Assured(r routes.Route, run routes.Run, a Assurance) (routes.Run
 			return run, err
 		}
 	}
+	l := lifting{t: t, route: r, Assurance: a}
 	best := trial{score: math.Inf(1)}
 	for _, start := range starts { // best first: none comes out better than it went in
 		if start.score >= best.score {
 			break
 		}
-		found, ok, err := t.lifted(r, start, a, best.score)
+		found, ok, err := l.lifted(start, best.score)
 		if err != nil {
 			return run, err
 		}
@@ -52,7 +53,7 @@ func (t *Tuner) Assured(r routes.Route, run routes.Run, a Assurance) (routes.Run
 			best = found
 		}
 	}
-	if best, err = t.soonerSure(r, starts, best, a); err != nil || best.run.Route == nil {
+	if best, err = l.sooner(starts, best); err != nil || best.run.Route == nil {
 		return run, err
 	}
 	return best.run, nil
@@ -103,32 +104,28 @@ func (t *Tuner) otherStands(r routes.Route, run routes.Run) ([]trial, error) {
 	return all, nil
 }
 
+// lifting makes the runs of a route sure.
+type lifting struct {
+	Assurance
+	t     *Tuner
+	route routes.Route
+	vain  []*routes.Run // with the driest aim, and not sure
+}
+
 // lifted finds the highest aim at which a run is sure enough. The lower the aim, the
 // worse the score: it is left where an aim that is not sure enough scores above most.
-func (t *Tuner) lifted(r routes.Route, start trial, a Assurance, most float64) (trial, bool, error) {
-	at := func(aim float64) (found trial, sure bool, err error) {
-		s := cloned(start.run.Settings)
-		s.AimMgPerKg = aim
-		run, err := t.Run(r, s)
-		if err == nil {
-			err = t.inTime(&run)
-		}
-		if err != nil || !run.Meets {
-			return trial{}, false, nil
-		}
-		if sure, err = a.Sure(&run); err != nil {
-			return trial{}, false, err
-		}
-		score, err := t.score(&run)
-		return trial{run: run, score: score}, sure, err
-	}
-	if sure, err := a.Sure(&start.run); err != nil || sure {
+func (l *lifting) lifted(start trial, most float64) (trial, bool, error) {
+	if sure, err := l.Sure(&start.run); err != nil || sure {
 		return start, err == nil, err
 	}
-	limit := t.Case.Goal() * 1e6
+	limit := l.t.Case.Goal() * 1e6
 	low, high := significant(limit*driestAim, 2), limit
-	best, sure, err := at(low)
-	if err != nil || !sure {
+	best, err := l.aimed(start, low)
+	if err != nil || best.run.Route == nil || l.inVain(&best.run) {
+		return trial{}, false, err
+	}
+	if sure, err := l.Sure(&best.run); err != nil || !sure {
+		l.vain = append(l.vain, &best.run)
 		return trial{}, false, err
 	}
 	for range aimTries {
@@ -136,9 +133,15 @@ func (t *Tuner) lifted(r routes.Route, start trial, a Assurance, most float64) (
 		if aim <= low || aim >= high {
 			break
 		}
-		found, sure, err := at(aim)
+		found, err := l.aimed(start, aim)
 		if err != nil {
 			return trial{}, false, err
+		}
+		sure := false
+		if found.run.Route != nil {
+			if sure, err = l.Sure(&found.run); err != nil {
+				return trial{}, false, err
+			}
 		}
 		switch {
 		case sure:
@@ -150,4 +153,37 @@ func (t *Tuner) lifted(r routes.Route, start trial, a Assurance, most float64) (
 		}
 	}
 	return best, true, nil
+}
+
+// aimed is a run with its last step sized for an aim (mg/kg); without a route where
+// it cannot be had or misses the limit.
+func (l *lifting) aimed(start trial, aim float64) (trial, error) {
+	s := cloned(start.run.Settings)
+	s.AimMgPerKg = aim
+	run, err := l.t.Run(l.route, s)
+	if err == nil {
+		err = l.t.inTime(&run)
+	}
+	if err != nil || !run.Meets {
+		return trial{}, nil
+	}
+	score, err := l.t.score(&run)
+	return trial{run: run, score: score}, err
+}
+
+// inVain reports whether a run that was not sure had no less sieve, for as long and
+// for no more lots: then this one leaves no less water in any draw. Where a lot may be
+// too dry that tells nothing.
+func (l *lifting) inVain(run *routes.Run) bool {
+	last := len(run.Settings.SoakHours) - 1
+	if last < 0 || l.t.Case.AcceptFrom() > 0 {
+		return false
+	}
+	at := len(run.Outcomes) - 1
+	return slices.ContainsFunc(l.vain, func(v *routes.Run) bool {
+		s, o := run.Settings, v.Settings
+		return o.Stirred[last] == s.Stirred[last] && o.SoakHours[last] >= s.SoakHours[last] &&
+			countAt(o.LotsOverCharge, last) <= countAt(s.LotsOverCharge, last) && countAt(o.Charges, last) == countAt(s.Charges, last) &&
+			v.Outcomes[at].AgentKg >= run.Outcomes[at].AgentKg
+	})
 }

@@ -5,7 +5,6 @@ import (
 	"slices"
 
 	"parch/internal/routes"
-	"parch/internal/steps"
 )
 
 // Tie is the share of the objective by which a shorter run may be worse than the best
@@ -77,9 +76,9 @@ func shortened(longer, taken trial, lowest float64) *routes.Shortened {
 	return &routes.Shortened{HoursTotal: longer.run.HoursTotal, Saves: 1 - lowest/taken.score}
 }
 
-// soonerSure is the shortest sure run that is as good as the best.
-func (t *Tuner) soonerSure(r routes.Route, starts []trial, best trial, a Assurance) (trial, error) {
-	if !t.ties() || best.run.Route == nil || r[len(r)-1].Kind != steps.Soak {
+// sooner is the shortest sure run that is as good as the best.
+func (l *lifting) sooner(starts []trial, best trial) (trial, error) {
+	if !l.t.ties() || best.run.Route == nil || len(starts) == 1 {
 		return best, nil
 	}
 	starts = slices.Clone(starts)
@@ -91,7 +90,7 @@ func (t *Tuner) soonerSure(r routes.Route, starts []trial, best trial, a Assuran
 		if !tied(start.score, best.score) {
 			continue
 		}
-		found, ok, err := t.lifted(r, start, a, best.score*(1+Tie))
+		found, ok, err := l.lifted(start, best.score*(1+Tie))
 		if err != nil {
 			return best, err
 		}

@@ -41,6 +41,14 @@ func setLotsOverCharge(s *routes.Settings, soak, n int) {
 	s.LotsOverCharge = placed(s.LotsOverCharge, soak, n)
 }
 
+// countAt is the count of one soak, as placed writes it.
+func countAt(counts []int, soak int) int {
+	if soak < len(counts) {
+		return counts[soak]
+	}
+	return 1
+}
+
 // placed sets the count of one soak. Where all are one nothing is written.
 func placed(counts []int, soak, n int) []int {
 	for len(counts) <= soak {
