@@ -115,18 +115,14 @@ type lifting struct {
 // lifted finds the highest aim at which a run is sure enough. The lower the aim, the
 // worse the score: it is left where an aim that is not sure enough scores above most.
 func (l *lifting) lifted(start trial, most float64) (trial, bool, error) {
-	if sure, err := l.Sure(&start.run); err != nil || sure {
-		return start, err == nil, err
-	}
 	limit := l.t.Case.Goal() * 1e6
 	low, high := significant(limit*driestAim, 2), limit
-	best, err := l.aimed(start, low)
-	if err != nil || best.run.Route == nil || l.inVain(&best.run) {
+	best, sure, err := l.driest(start, low)
+	if err != nil || !sure && l.t.Case.AcceptFrom() == 0 { // no aim is
 		return trial{}, false, err
 	}
-	if sure, err := l.Sure(&best.run); err != nil || !sure {
-		l.vain = append(l.vain, &best.run)
-		return trial{}, false, err
+	if asIs, err := l.Sure(&start.run); err != nil || asIs || !sure {
+		return start, asIs, err
 	}
 	for range aimTries {
 		aim := significant(math.Sqrt(low*high), 2)
@@ -153,6 +149,18 @@ func (l *lifting) lifted(start trial, most float64) (trial, bool, error) {
 		}
 	}
 	return best, true, nil
+}
+
+// driest is a run with the driest aim that is tried, and whether it is sure.
+func (l *lifting) driest(start trial, aim float64) (found trial, sure bool, err error) {
+	found, err = l.aimed(start, aim)
+	if err != nil || found.run.Route == nil || l.inVain(&found.run) {
+		return trial{}, false, err
+	}
+	if sure, err = l.Sure(&found.run); !sure {
+		l.vain = append(l.vain, &found.run)
+	}
+	return found, sure, err
 }
 
 // aimed is a run with its last step sized for an aim (mg/kg); without a route where
