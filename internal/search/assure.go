@@ -30,77 +30,97 @@ func (t *Tuner) Assured(r routes.Route, run routes.Run, a Assurance) (routes.Run
 	if err != nil || sure {
 		return run, err
 	}
-	starts := []trial{{run: run}}
-	if starts[0].score, err = t.score(&run); err != nil {
-		return run, err
-	}
-	if r[len(r)-1].Kind == steps.Soak {
-		if starts, err = t.otherStands(r, run); err != nil {
-			return run, err
-		}
-	}
 	l := lifting{t: t, route: r, Assurance: a}
 	best := trial{score: math.Inf(1)}
-	for _, start := range starts { // best first: none comes out better than it went in
-		if start.score >= best.score {
-			break
-		}
-		found, ok, err := l.lifted(start, best.score)
-		if err != nil {
-			return run, err
-		}
-		if ok && found.score < best.score {
-			best = found
+	if r[len(r)-1].Kind == steps.Soak {
+		best, err = l.soaked(run)
+	} else {
+		start := trial{run: run}
+		if start.score, err = t.score(&run); err == nil {
+			best, err = l.best([]trial{start}, best)
 		}
 	}
-	if best, err = l.sooner(starts, best); err != nil || best.run.Route == nil {
+	if err != nil || best.run.Route == nil {
 		return run, err
 	}
 	return best.run, nil
 }
 
-// otherStands are the runs with all stands of the last soak that reach the limit in
-// time, the best first.
-func (t *Tuner) otherStands(r routes.Route, run routes.Run) ([]trial, error) {
-	g, err := t.prepare(r)
+// soaked is the best sure run over the stands of the last soak, each with a few numbers of
+// lots over its charge and with several charges, and over all of them at the best stand;
+// or the shortest that is as good.
+func (l *lifting) soaked(run routes.Run) (trial, error) {
+	best := trial{score: math.Inf(1)}
+	g, err := l.t.prepare(l.route)
 	if err != nil {
-		return nil, err
+		return best, err
 	}
 	stands, err := g.standsOnOffer()
 	if err != nil {
-		return nil, err
+		return best, err
 	}
+	starts, err := l.starts(run, stands, l.t.fewMeetings())
+	if err != nil {
+		return best, err
+	}
+	if best, err = l.best(starts, best); err != nil || best.run.Route == nil {
+		return best, err
+	}
+	last := len(run.Settings.SoakHours) - 1
+	near, err := l.starts(run, []stand{{best.run.Settings.SoakHours[last], best.run.Settings.Stirred[last]}}, l.t.meetings())
+	if err != nil {
+		return best, err
+	}
+	if best, err = l.best(near, best); err != nil {
+		return best, err
+	}
+	return l.sooner(starts, best)
+}
+
+// best lifts the starts, the best first, as none comes out better than it went in. The
+// trial has no route where none becomes sure.
+func (l *lifting) best(starts []trial, best trial) (trial, error) {
+	for _, start := range starts {
+		if start.score >= best.score {
+			break
+		}
+		found, ok, err := l.lifted(start, best.score)
+		if err != nil {
+			return best, err
+		}
+		if ok && found.score < best.score {
+			best = found
+		}
+	}
+	return best, nil
+}
+
+// starts are the runs with stands and meetings of the last soak that reach the limit in
+// time, the best first.
+func (l *lifting) starts(run routes.Run, stands []stand, meetings []meeting) ([]trial, error) {
 	var all []trial
 	last := len(run.Settings.SoakHours) - 1
 	for _, stand := range stands {
-		for _, m := range t.meetings() {
+		for _, m := range meetings {
 			s := cloned(run.Settings)
 			s.SoakHours[last], s.Stirred[last] = stand.hours, stand.stirred
 			setLotsOverCharge(&s, last, m.lots)
 			setCharges(&s, last, m.charges)
-			other, err := t.Run(r, s)
+			other, err := l.t.Run(l.route, s)
 			if err == nil {
-				err = t.inTime(&other)
+				err = l.t.inTime(&other)
 			}
 			if err != nil || !other.Meets {
 				continue
 			}
-			score, err := t.score(&other)
+			score, err := l.t.score(&other)
 			if err != nil {
 				return nil, err
 			}
 			all = append(all, trial{run: other, score: score})
 		}
 	}
-	slices.SortStableFunc(all, func(a, b trial) int {
-		switch {
-		case a.score < b.score:
-			return -1
-		case a.score > b.score:
-			return 1
-		}
-		return 0
-	})
+	slices.SortStableFunc(all, func(a, b trial) int { return compareFloats(a.score, b.score) })
 	return all, nil
 }
 

@@ -78,7 +78,7 @@ func shortened(longer, taken trial, lowest float64) *routes.Shortened {
 
 // sooner is the shortest sure run that is as good as the best.
 func (l *lifting) sooner(starts []trial, best trial) (trial, error) {
-	if !l.t.ties() || best.run.Route == nil || len(starts) == 1 {
+	if !l.t.ties() {
 		return best, nil
 	}
 	starts = slices.Clone(starts)
