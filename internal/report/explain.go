@@ -9,6 +9,7 @@ import (
 
 	"parch/internal/costs"
 	"parch/internal/quantity"
+	"parch/internal/search"
 	"parch/internal/steps"
 	"parch/internal/study"
 )
@@ -140,7 +141,22 @@ func (p *page) explainHours(route *study.Route) {
 		parts = append(parts, quantity.Significant(route.Run.HoursWaiting, 4)+" between days of attended work")
 	}
 	p.heading(fmt.Sprintf("Start to finish: %s = %s h", strings.Join(parts, " + "), quantity.Significant(route.Run.HoursTotal, 4)))
+	if s := route.Run.Shortened; s != nil {
+		p.say(5, 4, "The best by the objective takes %s and saves %s of it: the shortest stand within %s of the best is taken.",
+			hours(s.HoursTotal), shareSaved(s.Saves), percent(search.Tie))
+	}
 }
+
+// shareSaved tells a share that may be next to nothing.
+func shareSaved(share float64) string {
+	const least = 1e-5
+	if share < least {
+		return "under " + percent(least)
+	}
+	return percent(share)
+}
+
+func percent(share float64) string { return quantity.Significant(share*100, 2) + " %" }
 
 func (p *page) explainBill(r *study.Report, route *study.Route) {
 	p.heading("Cost of a batch, " + r.Job.Currency + ":")
