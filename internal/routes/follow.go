@@ -26,7 +26,7 @@ type Curve struct {
 // Rows of a curve. A place among those of a loading is found by halving, so they are
 // a power of two.
 const (
-	LoadingNodes = 64
+	LoadingNodes = 128
 	potNodes     = 40 // of a trap or a forerun
 )
 

@@ -216,14 +216,14 @@ func soakBlock() *liveBlock {
 	})
 	own = append(own, halvingForDose()...)
 	own = append(own, []liveColumn{
-		{"ka", "Node below", "1", "MAX({from},{df})"}, {"wa", "Node below", "kg/kg", "INDEX(load_water,{ka})"}, {"wb", "Node above", "kg/kg", "INDEX(load_water,MIN({ka}+1,{to}))"},
+		{"ka", "Node below", "1", "MAX({from},{dg})"}, {"wa", "Node below", "kg/kg", "INDEX(load_water,{ka})"}, {"wb", "Node above", "kg/kg", "INDEX(load_water,MIN({ka}+1,{to}))"},
 		{"qa", "Held at the node", "kg/kg", "{cs}*INDEX(load_held,{ka})"},
 		{"slope", "Slope of the loading", "1", "({cs}*INDEX(load_held,MIN({ka}+1,{to}))-{qa})/({wb}-{wa})"},
 		{"ktlow", "K t at the node below", "1", "IFERROR(LN(({w}-{wa})/({goal}-{wa})),0)"}, {"kthigh", "K t at the node above, or at most", "1", "IFERROR(MIN({ktmost},LN(({w}-{wb})/({goal}-{wb}))),{ktmost})"},
 	}...)
 	own = append(own, rateForDose()...)
 	own = append(own, []liveColumn{
-		{"feasible", "A dose reaches it", "1", "({df}>={from})*({h2}>0)*({kthigh}>{ktlow})"},
+		{"feasible", "A dose reaches it", "1", "({dg}>={from})*({h2}>0)*({kthigh}>{ktlow})"},
 		{"exact", "Dose that reaches it", "kg/m3", "IFERROR({S}*({r0}-{x6}/(1-{x6}))/{h6}/{vol},{most})"},
 		{"dose", "Dose", "kg/m3", "IF({feasible}=1,MIN({most},MAX(site_least_dose,{exact})),{most})"},
 		{"solved", "Solved, or far under the least dose", "1", "MAX(1-{feasible},(ABS({h6}-{h5})<={h6}*job_tie*1000*1000)*1,({exact}+{exact}<site_least_dose)*1)"},
@@ -232,7 +232,7 @@ func soakBlock() *liveBlock {
 	}...)
 	own = append(own, halvingForWater()...)
 	own = append(own, []liveColumn{
-		{"ea", "Node below", "1", "MAX({from},MIN({hf},{to}-1))"}, {"ua", "Node below", "kg/kg", "INDEX(load_water,{ea})"}, {"ub", "Node above", "kg/kg", "INDEX(load_water,{ea}+1)"},
+		{"ea", "Node below", "1", "MAX({from},MIN({hg},{to}-1))"}, {"ua", "Node below", "kg/kg", "INDEX(load_water,{ea})"}, {"ub", "Node above", "kg/kg", "INDEX(load_water,{ea}+1)"},
 		{"fa", "Water at the node below", "kg", "{S}*{ua}/(1-{ua})+{m}*{cs}*INDEX(load_held,{ea})"}, {"fb", "Water at the node above", "kg", "{S}*{ub}/(1-{ub})+{m}*{cs}*INDEX(load_held,{ea}+1)"},
 		{"eq", "Equilibrium", "kg/kg", "{ua}+({ub}-{ua})*({all}-{fa})/({fb}-{fa})"}, {"oncurve", "On the curve", "1", "({fa}<={all}*(1+job_tie))*({all}<={fb}*(1+job_tie))*({t}>0)"}, {"k", "Rate", "1/s", "1/({rm}+1/({kb}*{dose}))"},
 		{"out", "Water out", "kg/kg", "IF({meets}=1,{goal},{eq}+({w}-{eq})*EXP(-{k}*{t}))"}, {"held", "Held by the beads", "kg", "MIN({m}*{hold}*{lot.ds},{S})/{lots}"},
@@ -277,8 +277,9 @@ func rateForDose() (out []liveColumn) {
 	return out
 }
 
-// halves of the nodes of a curve, of their half and so on, down to one node.
-var halves = []string{"a", "b", "c", "d", "e", "f"}
+// halves of the nodes of a curve, of their half and so on, down to one node: what the
+// last finds, {dg} and {hg}, is the node.
+var halves = []string{"a", "b", "c", "d", "e", "f", "g"}
 
 // halvingForDose finds the last node of the loading curve at which the dose that
 // holds the water is too large for the time: K t times 1/K is less than there is.
