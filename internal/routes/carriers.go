@@ -150,17 +150,10 @@ var CarrierDoses = []float64{0.1, 0.25, 0.5, 1}
 // UsualCarrierDose is the dose at which carriers are compared.
 const UsualCarrierDose = 0.25
 
-// carrierStepError is a little coarser than the default of the steps. Of 400 random
-// runs over eleven pairs three moved by more than 0.5 % of the hours from there to a
-// fiftieth of it: two by one draining more or less, which are counted whole; one of
-// dimethylformamide with toluene at 10 °C by 0.5 %, where the activity model shows a
-// false third liquid and the receiver's layers depend on where they were looked for.
-const carrierStepError = 1e-4
-
 func (c *Case) carrierPlan(choice choice, lot steps.Lot) steps.CarrierPlan {
 	plan := steps.CarrierPlan{
 		DoseKg: choice.dose * lot.SolventKg, OrganicWater: 1, CarrierLimit: c.practice("carrier-limit"),
-		Stages: choice.stages, HeelShare: c.practice("forerun-heel"), StepError: carrierStepError,
+		Stages: choice.stages, HeelShare: c.practice("forerun-heel"),
 	}
 	if choice.stages > 0 {
 		plan.RefluxRatio = c.practice("forerun-reflux")

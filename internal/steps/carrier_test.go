@@ -355,6 +355,53 @@ func TestCarrierStepControl(t *testing.T) {
 	}
 }
 
+// Layers that come together in density, and would change places: chloroform (1.48 kg/L)
+// makes the organic layer heavy, isobutanol (0.80 kg/L, handbooks) light. By hand, with
+// volumes that add up, a layer of both is as heavy as water (0.99 kg/L) where 42 % of it
+// are chloroform. A step once went past that, and the run ended far drier than with finer
+// steps. The same pot is light once it is dry, and with less chloroform from the start.
+func TestCarrierLayersComeTogether(t *testing.T) {
+	eq := carrierEquilibrium(t, "isobutanol", "chloroform", 40)
+	run := func(water, dose, stepError float64) (steps.Outcome, error) {
+		feed := steps.Lot{SolventKg: 10 * (1 - water), WaterKg: 10 * water, TempK: 293.15}
+		plan := withColumn(feed, dose, 0)
+		plan.RefluxRatio, plan.Goal, plan.PreFilled, plan.StepError = 0, 100e-6, true, stepError
+		return steps.RunCarrierTrap(eq, feed, plan, rig("either"), rules)
+	}
+	for _, water := range []float64{0.15, 0.2, 0.25, 0.3} {
+		fine, err := run(water, 0.05, 1e-6)
+		if err != nil {
+			t.Fatal(err)
+		}
+		for _, stepError := range []float64{0, 1e-4, 1e-3} {
+			o, err := run(water, 0.05, stepError)
+			if err != nil {
+				t.Fatal(err)
+			}
+			if o.Why != steps.AtExchange || o.Returns != "heavy" || !strings.Contains(o.WhyText, "have come together") {
+				t.Errorf("%g water, steps of %g: %s return, %s", water, stepError, o.Returns, o.WhyText)
+			}
+			name := fmt.Sprintf("%g water, steps of %g", water, stepError)
+			near(t, name, o.Figure("water in the pot when the trap stops"), fine.Figure("water in the pot when the trap stops"), 0.005)
+		}
+	}
+	for water, dose := range map[float64]float64{0.08: 0.05, 0.2: 0.02} {
+		if o, err := run(water, dose, 0); err != nil || o.Returns != "light" {
+			t.Errorf("%g water, a dose of %g: %s return, %v", water, dose, o.Returns, err)
+		}
+	}
+	_, err := run(0.1, 0.05, 0)
+	if !errors.Is(err, steps.ErrNoCarrier) || !strings.Contains(err.Error(), "differ by 0.2 % only and do not settle") {
+		t.Fatalf("layers of the same density: %v", err)
+	}
+	var water, isobutanol, chloroform float64
+	_, held, _ := strings.Cut(err.Error(), "it holds ")
+	if _, err := fmt.Sscanf(held, "%f %% water, %f %% isobutanol and %f %% chloroform", &water, &isobutanol, &chloroform); err != nil {
+		t.Fatalf("%s: %v", held, err)
+	}
+	near(t, "chloroform beside isobutanol where both layers are as heavy", chloroform/(chloroform+isobutanol), 0.42, 0.03)
+}
+
 func TestCarrierRefusals(t *testing.T) {
 	m, organic, doubt := three(t, "acetone", "dichloromethane")
 	if _, err := steps.NewCarrierEquilibrium(m, organic, doubt, 293.15, atmospherePa); !errors.Is(err, steps.ErrNoCarrier) || !strings.Contains(err.Error(), "does not leave") {

@@ -58,8 +58,8 @@ func (r *refluxing) reflux() error {
 		}
 	}
 	progress := func(s *state, c *condensed) float64 {
-		if l := r.m.Settle(c.split, r.eq.ReceiverK); l.Return != thermo.None && !r.fits(l.Return) {
-			return math.Inf(1) // the layers have changed places within a step
+		if r.changedPlaces(c) { // within a step, which went past densities that are alike
+			return math.Inf(1)
 		}
 		done := r.timeSpent(r.heatJ(s, c.pot.TempK))
 		for i, l := range r.leeway(s, c) {
@@ -68,14 +68,20 @@ func (r *refluxing) reflux() error {
 		return done
 	}
 	var last condensed
-	err = r.march(r.returning, progress, func(s *state, c *condensed) {
-		r.watch(s, c)
+	err = r.march(r.returning, progress, func(_ *state, c *condensed) {
+		r.watch(c)
 		last = *c
 	})
 	if err == nil && r.dryness(&r.s) > goal*(1+1e-4) {
 		r.why, r.whyText = r.ended(&r.s, &last)
 	}
 	return err
+}
+
+// changedPlaces reports whether the layer that went back so far is the other one now.
+func (r *refluxing) changedPlaces(c *condensed) bool {
+	now := r.m.Settle(c.split, r.eq.ReceiverK).Return
+	return now != thermo.None && now != r.returns
 }
 
 func (r *refluxing) leastKg() float64 { return r.plan.HeelShare * r.massKg(r.charge) }
@@ -173,31 +179,26 @@ func (r *refluxing) ended(s *state, c *condensed) (stop Stop, text string) {
 	case byHeel:
 		return AtHeel, fmt.Sprintf("heel: the aqueous layer has taken all but %.0f %% of the charge", 100*r.plan.HeelShare)
 	case byDensity:
-		return AtExchange, fmt.Sprintf("the layers' densities differ by %.1f %% only and do not settle, with %s in the pot", 100*l.DensityDifference(), pot)
+		return AtExchange, fmt.Sprintf("the layers' densities have come together with %s in the pot: organic %.0f, aqueous %.0f kg/m3 differ by %.1f %% only and do not settle",
+			pot, l.OrganicKgPerM3, l.AqueousKgPerM3, 100*l.DensityDifference())
 	case byReturn:
 		return AtOneLayer, fmt.Sprintf("no organic layer: the condensate of a pot at %s is hardly anything but aqueous layer at %.0f °C", pot, receiver)
 	case byWater:
 		return AtFloor, fmt.Sprintf("floor: with %s in the pot the aqueous layer is no wetter", pot)
 	}
-	if !r.fits(l.Return) {
+	if r.changedPlaces(c) {
 		return AtExchange, fmt.Sprintf("the layers change places with %s in the pot: organic %.0f, aqueous %.0f kg/m3", pot, l.OrganicKgPerM3, l.AqueousKgPerM3)
 	}
 	return AtFloor, fmt.Sprintf("floor: with %s in the pot hardly any second layer forms at %.0f °C", pot, receiver)
 }
 
-// watch notes what changes at an accepted step: the return needed, and how well
-// the water of the organic layer is known.
-func (r *refluxing) watch(s *state, c *condensed) {
+// watch notes at an accepted step how well the water of the organic layer is known.
+func (r *refluxing) watch(c *condensed) {
 	if !c.split.Exists {
 		return
 	}
 	if factor, basis := r.eq.Band(r.m.Mass(c.split.Organic)); factor > r.widestBand {
 		r.widestBand, r.bandBasis = factor, basis
-	}
-	if l := r.m.Settle(c.split, r.eq.ReceiverK); l.Return != r.returns && l.Return != thermo.None {
-		r.warnings = append(r.warnings, fmt.Sprintf("the layers change places with %s in the pot: from here on the receiver must return the %s one",
-			quantity.FormatWater(r.dryness(s)), l.Return))
-		r.returns = l.Return
 	}
 }
 
@@ -226,7 +227,7 @@ func (r *refluxing) firstLayers() error {
 		return fmt.Errorf("%w: without the carrier the aqueous layer holds %.3g %% water, the pot %.3g %%: the solvent would leave first",
 			ErrNoCarrier, 100*layer, 100*pot)
 	}
-	r.watch(&r.s, &c)
+	r.watch(&c)
 	return nil
 }
 

@@ -57,7 +57,7 @@ func (m *Ternary) split(z Fractions, tK float64, guess TernarySplit) (TernarySpl
 	z = lifted(z)
 	l := m.at(tK)
 	search := splitSearch{liquid: &l, z: z}
-	if guess.Exists && guess.outer && search.try(&guess.Aqueous, &guess.Organic, flashSoon) {
+	if guess.Guides() && search.try(&guess.Aqueous, &guess.Organic, flashSoon) {
 		if search.best.outer = search.best.trusted(); search.best.outer {
 			return search.best, nil
 		}
@@ -92,6 +92,9 @@ func (s *TernarySplit) trusted() bool {
 	const leastWater, mostCarrier = 0.15, 0.15 // mole fractions
 	return s.Aqueous[InWater] > leastWater && s.Aqueous[InCarrier] < mostCarrier
 }
+
+// Guides reports whether a split is a guess for a neighbour's: others are passed over.
+func (s *TernarySplit) Guides() bool { return s.Exists && s.outer }
 
 // outside are a layer without water and one that is nearly all water.
 func outside(z *Fractions) (dry, watery Fractions) {
