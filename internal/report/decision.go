@@ -14,7 +14,7 @@ func (p *page) breakEvens(l *study.Lot) {
 	if len(l.BreakEvens) == 0 {
 		return
 	}
-	p.heading("Break-evens, by cost, the rest as it is, whatever the chance:")
+	p.heading("Break-evens, by cost, the rest as it is, " + l.AskedOf() + ":")
 	for _, b := range l.BreakEvens {
 		if b.Answer != "" {
 			p.say(5, 4, "%s: %s.", sentence(b.What), b.Answer)
@@ -79,7 +79,7 @@ func (p *page) whatIf(r *study.Report, l *study.Lot) {
 	if l.WhatIf == nil || !p.all {
 		return
 	}
-	p.heading("The cheapest route from other starts (mg/kg, down) to other targets (across), " + r.Job.Currency + " a litre:")
+	p.heading("The cheapest route from other starts (mg/kg, down) to other targets (across), " + r.Job.Currency + " a litre, " + l.AskedOf() + ":")
 	columns := []column{{"From", true, 0}}
 	for _, t := range l.WhatIf.Target {
 		columns = append(columns, column{"to " + quantity.Significant(t*mgPerKg, 3), false, 20})

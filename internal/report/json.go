@@ -40,6 +40,9 @@ type lotOut struct {
 	Routes         []routeOut    `json:"routes"`
 	Excluded       []excludedOut `json:"excluded"`
 	BreakEven      breakEvensOut `json:"break_even"`
+	AskedOf        string        `json:"break_even_of,omitempty"` // which routes break-evens, trade-off and grid are asked of
+	TradeOff       []frontOut    `json:"trade_off,omitempty"`
+	WhatIf         *whatIfOut    `json:"what_if,omitempty"`
 	NothingToDo    string        `json:"nothing_to_do,omitempty"`
 	CannotShow     string        `json:"cannot_show,omitempty"`
 	Warnings       []string      `json:"warnings,omitempty"`
@@ -179,7 +182,12 @@ func showLot(l *study.Lot) lotOut {
 		NothingToDo:    l.NothingToDo,
 		CannotShow:     l.CannotShow,
 		BreakEven:      showBreakEvens(l),
+		TradeOff:       showFront(l),
+		WhatIf:         showWhatIf(l.WhatIf),
 		Warnings:       l.Warnings,
+	}
+	if len(l.BreakEvens) > 0 || l.WhatIf != nil {
+		out.AskedOf = l.AskedOf()
 	}
 	for i := range l.Routes {
 		out.Routes[i] = showRoute(&l.Routes[i])

@@ -54,6 +54,9 @@ func (t *Tuner) blank(r routes.Route) routes.Settings {
 			}
 		}
 	}
+	if kept, ok := t.kept(r); ok {
+		kept.set(&s, t.Case.Goal())
+	}
 	return s
 }
 
@@ -92,8 +95,10 @@ func (t *Tuner) axes(r routes.Route, stands []stand) (all []axis) {
 			}
 		case steps.Soak:
 			all = append(all, standsOf(stands, k))
-			all = append(all, later(oneOf(t.lotsOverCharge(), func(s *routes.Settings, n int) { setLotsOverCharge(s, k, n) })))
-			all = append(all, later(oneOf(chargesTried, func(s *routes.Settings, n int) { setCharges(s, k, n) })))
+			if _, kept := t.kept(r); !kept {
+				all = append(all, later(oneOf(t.lotsOverCharge(), func(s *routes.Settings, n int) { setLotsOverCharge(s, k, n) })))
+				all = append(all, later(oneOf(chargesTried, func(s *routes.Settings, n int) { setCharges(s, k, n) })))
+			}
 		}
 		if stage.Kind == steps.Soak || stage.Kind == steps.Column {
 			bed := beds

@@ -33,7 +33,10 @@ type Tuner struct {
 	Site      *costs.Arrangement // nil: uses are paid for as they come
 	Exact     bool               // hand-overs are not rounded
 	Receiver  string             // the only receiver that a trap may have; "": any that fits
-	Stop      func() error       // why no more runs are to be made; nil: never
+
+	// Kept is what is not tuned of a route; false where all is. nil: all of each.
+	Kept func(routes.Route) (Kept, bool)
+	Stop func() error // why no more runs are to be made; nil: never
 }
 
 // Run carries out a route and arranges its uses as the site pays for them.
@@ -131,7 +134,7 @@ func (t *Tuner) TuneFrom(r routes.Route, warm *routes.Settings) (routes.Run, err
 
 // worthIt drops a start where everything is tried out anyway.
 func (g *tuning) worthIt(warm *routes.Settings) *routes.Settings {
-	if g.route.CarrierOf() == "" && len(g.places) == 0 && g.combinations() <= mostProduct && !g.hasLate() {
+	if g.t.Kept == nil && g.route.CarrierOf() == "" && len(g.places) == 0 && g.combinations() <= mostProduct && !g.hasLate() {
 		return nil
 	}
 	return warm

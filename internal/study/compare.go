@@ -157,6 +157,7 @@ func (w *work) compare(ctx context.Context, book costs.Book, o Options) (Lot, er
 		return Lot{}, err
 	}
 	l.unsure(w.drawn)
+	l.surely = surelyOf(&l)
 	if given == nil {
 		l.dropDominated()
 	}

@@ -36,8 +36,9 @@ func (r *Report) decide(ctx context.Context, c *catalog.Catalog, progress *meter
 	})
 }
 
-// question is what is asked of a lot beyond its ranking: always by the cost of what
-// is computed, whatever the chance to reach the limit.
+// question is what is asked of a lot beyond its ranking, always by cost: of the routes
+// that are sure enough, each sized as far under the limit as makes it sure now. Where
+// none is, of what is computed, whatever the chance to reach the limit.
 type question struct {
 	lot     *Lot
 	job     *job.Job
@@ -73,13 +74,13 @@ func newQuestion(ctx context.Context, r *Report, l *Lot, c *catalog.Catalog) (*q
 			q.longer = append(q.longer, r.Run.Route)
 		}
 	}
-	q.offered = append(q.offered, q.longer...)
+	q.offered = q.sure(append(q.offered, q.longer...))
 	_, q.now, err = q.field(q.tuner(k, q.book), nil).Cheapest(nil, math.Inf(1))
 	return q, err
 }
 
 func (q *question) tuner(k *routes.Case, book costs.Book) *search.Tuner {
-	return &search.Tuner{Case: k, Book: book, Objective: search.Cost, Site: q.site, Exact: true, Stop: q.stop}
+	return &search.Tuner{Case: k, Book: book, Objective: search.Cost, Site: q.site, Exact: true, Kept: q.lot.surely.kept, Stop: q.stop}
 }
 
 // field of the routes that pass, tuned for a case and its prices.
@@ -91,6 +92,11 @@ func (q *question) field(t *search.Tuner, pass func(routes.Route) bool) search.F
 		}
 	}
 	return f
+}
+
+// sure leaves out the routes that are not sure enough.
+func (q *question) sure(all []routes.Route) []routes.Route {
+	return slices.DeleteFunc(all, func(r routes.Route) bool { return q.lot.surely.way(r).out })
 }
 
 // quick leaves the carriers out but for the one that leads: they take more time here

@@ -258,7 +258,7 @@ func (l *Lot) unsure(d *doubts) {
 	if d == nil || math.IsNaN(d.limits.Most) || len(l.Routes) == 0 || !l.Routes[0].Meets() {
 		return
 	}
-	if slices.ContainsFunc(l.Routes, func(r Route) bool { return r.Recommended }) {
+	if l.anySure() {
 		return
 	}
 	l.Warnings = append(l.Warnings, fmt.Sprintf("no route is sure enough: none reaches the target with a chance of %s; the first of the ranking stands for want of a better one", quantity.FormatShare(d.assurance)))

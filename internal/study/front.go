@@ -1,12 +1,14 @@
 package study
 
-// front enters the routes that reach the limit and have their prices into the
-// trade-off of cost, attended hours, waste and energy, and names for each the first
+import "slices"
+
+// front enters the routes that reach the limit, are sure enough where any is, and have
+// their prices into the trade-off of cost, attended hours, waste and energy, and names for each the first
 // route that is no worse in all four and better in one.
 func (l *Lot) front() {
 	l.Front = nil
 	for i := range l.Routes {
-		if r := &l.Routes[i]; r.Meets() && r.Bill.Priced() {
+		if r := &l.Routes[i]; l.competes(r) && r.Bill.Priced() {
 			l.Front = append(l.Front, FrontPoint{
 				ID: r.ID, CostPerLitre: r.Bill.PerLitre.InexactFloat64(),
 				HoursAttended: r.Run.HoursAttended, WasteKg: r.Run.WasteKg, EnergyKWh: r.Run.EnergyKWh,
@@ -21,6 +23,13 @@ func (l *Lot) front() {
 			}
 		}
 	}
+}
+
+// competes reports whether a route reaches the limit and is sure enough, where any is.
+func (l *Lot) competes(r *Route) bool { return r.Recommended || r.Meets() && !l.anySure() }
+
+func (l *Lot) anySure() bool {
+	return slices.ContainsFunc(l.Routes, func(r Route) bool { return r.Recommended })
 }
 
 func (p FrontPoint) beats(o FrontPoint) bool {

@@ -56,6 +56,21 @@ type Lot struct {
 	Warnings    []string
 
 	Doubts []Mover // of the best route, the largest first; empty without draws
+
+	surely *surely // nil where no route is sure enough, or no draws were made
+}
+
+// OfSure reports whether the break-evens, the trade-off and the grid of other lots are
+// asked of routes that are sure enough; else of all that reach the limit, whatever
+// their chance.
+func (l *Lot) OfSure() bool { return l.surely != nil }
+
+// AskedOf says so.
+func (l *Lot) AskedOf() string {
+	if l.OfSure() {
+		return "each route as far under the limit as makes it sure now"
+	}
+	return "whatever the chance"
 }
 
 // Route is one compared route.

@@ -53,7 +53,7 @@ func (q *question) cell(start, target float64, floors map[string]float64) (WhatI
 	}
 	offered, _ := t.Case.Candidates()
 	f := q.field(t, nil)
-	f.Routes = append(q.quick(offered), q.longer...)
+	f.Routes = q.sure(append(q.quick(offered), q.longer...))
 	won, found, err := f.Cheapest(floors, math.Inf(1))
 	if err != nil {
 		return WhatIfCell{}, nil, err

@@ -168,7 +168,7 @@ func (l *layout) moverBlock(g *grid) {
 func headAcross(g *grid, row, first, last int, s string) { g.across(first, last, row, heading, s) }
 
 func (l *layout) breakEvenBlock(g *grid) {
-	row := g.table(g.below(), "Break-evens: where the choice turns, all else as in the job",
+	row := g.table(g.below(), "Break-evens: where the choice turns, all else as in the job, "+l.askedOf(),
 		[]column{{name: "Lot"}, {name: "Question"}, {"Now", "1"}, {"Turns at", "1"}, {"Searched from", "1"}, {"Searched to", "1"}, {name: "Unit"}})
 	headAcross(g, row-1, 8, 15, "Answer")
 	start := row
@@ -212,6 +212,18 @@ func (l *layout) frontBlock(g *grid) {
 	}
 }
 
+// askedOf tells which routes the break-evens are asked of, where that is the same for all
+// lots.
+func (l *layout) askedOf() string {
+	said := l.lots[0].AskedOf()
+	for _, lot := range l.lots[1:] {
+		if lot.AskedOf() != said {
+			return "where a route is sure enough: of those that are, as sure as now"
+		}
+	}
+	return said
+}
+
 // mostWhatIf columns of targets fit on the sheet.
 const mostWhatIf = 12
 
@@ -242,7 +254,7 @@ func (l *layout) whatIfBlock(g *grid, lot *lotModel, w *study.WhatIf) {
 			row++
 		}
 	}
-	block(fmt.Sprintf("Lot %d, what if: the cheapest route for other starts and targets", lot.no), func(row, column int, c study.WhatIfCell) {
+	block(fmt.Sprintf("Lot %d, what if: the cheapest route for other starts and targets, %s", lot.no, lot.AskedOf()), func(row, column int, c study.WhatIfCell) {
 		s := c.ID
 		if s == "" {
 			s = c.Note
