@@ -102,13 +102,15 @@ func (l *Lot) residualOn(agent string) []float64 {
 	if l.Case.Lot.ResidualLoading == 0 { // stated to be empty
 		return constant(0, l.n)
 	}
-	onZeolite := l.column(l.residual())
-	if !l.Case.Borrows(agent) {
-		return onZeolite
-	}
-	on := slices.Clone(l.practice(routes.OxideHistory))
+	on := slices.Clone(l.column(l.residual()))
+	share := l.Case.Lot.HistoryShare(agent)
 	for i := range on {
-		on[i] *= onZeolite[i]
+		on[i] *= share
+	}
+	if l.Case.Borrows(agent) {
+		for i, factor := range l.practice(routes.OxideHistory) {
+			on[i] *= factor
+		}
 	}
 	return on
 }

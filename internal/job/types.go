@@ -141,16 +141,17 @@ type Lot struct {
 	NeededWithinS   float64 // 0 where there is no limit
 	WeeklyM3        float64 // what the apparatus must be able to dry in a week; 0 where not given
 	Peroxide        *Peroxide
-	HeaterW         float64       // 0: the still's own
-	SieveHistory    string        // key of catalog.History, or ""
-	SieveHistoryK   float64       // temperature where given as one, else 0
-	ResidualLoading float64       // kg/kg, from the history
-	ResidualStated  bool          // by the owner of the sorbent
-	SieveTreatment  string        // as typed, where handling and standing were added up; "" else
-	ResidualBand    *ResidualBand // of such a history; nil else
-	FailedBatch     *FailedBatch  // nil where neither the lot nor the site says it
-	WaterBand       *WaterBand    // of Water; nil where one reading is given
-	VesselHeightM   float64       // 0: from the vessel's charge
+	HeaterW         float64            // 0: the still's own
+	SieveHistory    string             // key of catalog.History, or ""
+	SieveHistoryK   float64            // temperature where given as one, else 0
+	ResidualLoading float64            // kg/kg, from the history
+	ResidualStated  bool               // by the owner of the sorbent
+	SieveTreatment  string             // as typed, where handling and standing were added up; "" else
+	ResidualBand    *ResidualBand      // of such a history; nil else
+	OtherResiduals  map[string]float64 // of such a history: what other sorbents hold by their own isotherms, as shares of ResidualLoading
+	FailedBatch     *FailedBatch       // nil where neither the lot nor the site says it
+	WaterBand       *WaterBand         // of Water; nil where one reading is given
+	VesselHeightM   float64            // 0: from the vessel's charge
 	Reclaimed       bool
 	Line            int
 }
@@ -171,6 +172,15 @@ type WaterBand struct {
 // ResidualBand is how far a residual loading that was added up from handling and
 // standing may be off: its ends as shares of Lot.ResidualLoading.
 type ResidualBand struct{ Low, High float64 }
+
+// HistoryShare is what a sorbent holds after the lot's history, as a share of
+// ResidualLoading.
+func (l Lot) HistoryShare(agent string) float64 {
+	if share, ok := l.OtherResiduals[agent]; ok {
+		return share
+	}
+	return 1
+}
 
 // Default is a value that the job left to the catalog.
 type Default struct {

@@ -124,7 +124,7 @@ const saltPairs = 3
 // sieveConstants are those of soaks and columns alike.
 func (f *follower) sieveConstants(agent string) Constants {
 	a := f.Catalog.Agents[agent]
-	k := Constants{"uses": a.Lives.SI, "fade": a.Fade.SI, "hold-up m3/kg": a.HoldUp.SI, "largest kg/m3": a.MaxDose.SI, "oven kg": 1, "lots": 1}
+	k := Constants{"uses": a.Lives.SI, "fade": a.Fade.SI, "hold-up m3/kg": a.HoldUp.SI, "largest kg/m3": a.MaxDose.SI, "oven kg": 1, "lots": 1, "history share": f.HistoryShare(agent)}
 	if ovens := f.pieces("oven"); len(ovens) > 0 {
 		k["oven kg"], k["oven kWh"], k["oven h"], k["oven"] = ovens[0].Load.SI, ovens[0].Energy.SI/3.6e6, f.practice("oven-attended")/3600, 1
 	}

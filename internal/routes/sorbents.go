@@ -128,11 +128,15 @@ func (c *Case) Borrows(agent string) bool {
 const OxideHistory = "oxide-history"
 
 // ResidualOn is the water (kg/kg) on a sorbent after the lot's history.
-func (c *Case) ResidualOn(agent string) float64 {
+func (c *Case) ResidualOn(agent string) float64 { return c.Lot.ResidualLoading * c.HistoryShare(agent) }
+
+// HistoryShare is what a sorbent holds after the lot's history over
+// Lot.ResidualLoading.
+func (c *Case) HistoryShare(agent string) float64 {
 	if c.Borrows(agent) {
-		return c.Lot.ResidualLoading * c.practice(OxideHistory)
+		return c.Lot.HistoryShare(agent) * c.practice(OxideHistory)
 	}
-	return c.Lot.ResidualLoading
+	return c.Lot.HistoryShare(agent)
 }
 
 // alcohols take the surface of oxides: measured loadings lie a factor of 2 to 67

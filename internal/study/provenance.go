@@ -183,7 +183,7 @@ func (p *shelf) agent(a *catalog.Agent) {
 
 func (p *shelf) history(lot *job.Lot) {
 	if lot.SieveTreatment != "" {
-		p.note("sieve history "+lot.SieveTreatment+": residual loading", quantity.Format(lot.ResidualLoading, quantity.MassRatio, "g/100 g", 3),
+		p.note("sieve history "+lot.SieveTreatment+": residual loading of 3A, others by their isotherms", quantity.Format(lot.ResidualLoading, quantity.MassRatio, "g/100 g", 3),
 			catalog.Origin{Source: "assumption", Confidence: catalog.Assumption, Note: "handling and standing are assumed"})
 		return
 	}

@@ -103,7 +103,7 @@ func Borrowed(k *routes.Case, agent string) []string {
 		return nil
 	}
 	band := k.Catalog.Practice[routes.OxideHistory]
-	zeolite := 100 * k.Lot.ResidualLoading
+	zeolite := 100 * k.Lot.ResidualLoading * k.Lot.HistoryShare(agent)
 	return []string{fmt.Sprintf("what %s holds after activation is not known: %.2g g/100 g is taken from zeolites, and the band, %.2g to %.2g g/100 g, is an assumption; where it is known, state it as \"residual ...\"",
 		k.Catalog.Agents[agent].Plain(), zeolite*band.SI, zeolite*band.Low, zeolite*band.High)}
 }

@@ -196,7 +196,7 @@ func truth(b bool) float64 {
 
 var stillNames = map[string]string{"share": "attended share", "vl": "vapour loss 1/s", "flow": "cooling m3/s", "cool": "cooling J/m3"}
 
-var sieveNames = map[string]string{"hold": "hold-up m3/kg", "fade": "fade", "ovenkg": "oven kg", "runkwh": "oven kWh", "runh": "oven h", "activated": "activated", "lots": "lots", "gaskg": "flush gas m3/kg", "condensed": "flush caught", "flushwork": "flush work"}
+var sieveNames = map[string]string{"hold": "hold-up m3/kg", "fade": "fade", "ovenkg": "oven kg", "runkwh": "oven kWh", "runh": "oven h", "activated": "activated", "lots": "lots", "gaskg": "flush gas m3/kg", "condensed": "flush caught", "flushwork": "flush work", "held0": "history share"}
 
 // constantNames leads from the keys of the columns to the program's names.
 var constantNames = map[steps.Kind]map[string]string{
