@@ -1,6 +1,7 @@
 package routes
 
 import (
+	"fmt"
 	"math"
 
 	"parch/internal/assay"
@@ -30,12 +31,12 @@ const SieveDust = "soak-dust"
 type SieveUse struct {
 	ChargeKg       float64
 	Lots           int
-	TakenKg        float64 // of water, by all these lots
-	LoadingKgPerKg float64 // after them
-	NextOutlet     float64 // kg/kg, of the next such lot, not regenerated; NaN where it would be made wetter
-	Uses           float64 // of a charge before it is discarded
-	CapacityLeft   float64 // share of a new one's capacity at the last of them
-	DustShare      float64 // of the charge, a lot
+	TakenKg        []float64 // of water, from all these lots, by each of the charges that follow one another
+	LoadingKgPerKg []float64 // after them
+	NextOutlet     float64   // kg/kg, of the next such lot, not regenerated; NaN where it would be made wetter
+	Uses           float64   // of a charge before it is discarded
+	CapacityLeft   float64   // share of a new one's capacity at the last of them
+	DustShare      float64   // of the charge, a lot
 	DustKgPerYear  float64
 }
 
@@ -43,28 +44,54 @@ type SieveUse struct {
 // one more.
 func (c *Case) UseOf(run *Run, place int) (SieveUse, error) {
 	o, choice := run.Outcomes[place], run.Settings.at(run.Route, place)
-	agent, lots := c.Catalog.Agents[o.Agent], max(choice.lots, 1)
-	const anyOutlet = 1
-	life, err := steps.FollowSieve(c.Mixture, o.In, anyOutlet, choice.soakHours*3600, c.sorbent(o.Agent, Discard), c.soakRig(choice.stirred), steps.LifeRules{
-		Kg: o.AgentKg, FreshKgPerKg: c.ResidualOn(o.Agent), MostCycles: lifeBatches,
-	}, lots+1)
+	u := SieveUse{ChargeKg: o.AgentKg, Lots: max(choice.lots, 1), Uses: 1, CapacityLeft: 1, DustShare: c.practice(SieveDust)}
+	var err error
+	if choice.charges > 1 {
+		err = c.useOfSeries(o, choice, &u)
+	} else {
+		err = c.useOfOne(o, choice, &u)
+	}
 	if err != nil {
 		return SieveUse{}, err
 	}
-	last, next := life.Batches[lots-1], life.Batches[lots]
-	u := SieveUse{
-		ChargeKg: o.AgentKg, Lots: lots, TakenKg: last.WaterTakenKg, LoadingKgPerKg: last.LoadingAfter, NextOutlet: next.Outlet,
-		Uses: 1, CapacityLeft: 1, DustShare: c.practice(SieveDust),
-	}
-	if next.RegeneratedFirst || next.RenewedFirst {
-		u.NextOutlet = math.NaN()
-	}
 	if choice.after == Regenerate {
+		agent := c.Catalog.Agents[o.Agent]
 		u.Uses = agent.Lives.SI
 		u.CapacityLeft = math.Pow(1-agent.Fade.SI, u.Uses-1)
 	}
 	u.DustKgPerYear = u.DustShare * u.ChargeKg * c.Lot.BatchesPerYear
 	return u, nil
+}
+
+// useOfOne follows one charge through its lots.
+func (c *Case) useOfOne(o steps.Outcome, choice choice, u *SieveUse) error {
+	const anyOutlet = 1
+	life, err := steps.FollowSieve(c.Mixture, o.In, anyOutlet, choice.soakHours*3600, c.sorbent(o.Agent, Discard), c.soakRig(choice.stirred), steps.LifeRules{
+		Kg: o.AgentKg, FreshKgPerKg: c.ResidualOn(o.Agent), MostCycles: lifeBatches,
+	}, u.Lots+1)
+	if err != nil {
+		return err
+	}
+	last, next := life.Batches[u.Lots-1], life.Batches[u.Lots]
+	u.TakenKg, u.LoadingKgPerKg, u.NextOutlet = []float64{last.WaterTakenKg}, []float64{last.LoadingAfter}, next.Outlet
+	if next.RegeneratedFirst || next.RenewedFirst {
+		u.NextOutlet = math.NaN()
+	}
+	return nil
+}
+
+// useOfSeries takes equal charges through their one lot, and through one more.
+func (c *Case) useOfSeries(o steps.Outcome, choice choice, u *SieveUse) (err error) {
+	var used []steps.UsedCharge
+	kg := o.AgentKg / float64(choice.charges)
+	for i := range choice.charges {
+		loading := o.Figure(fmt.Sprintf("loading after, charge %d", i+1)) / 100
+		used = append(used, steps.UsedCharge{Kg: kg, LoadingKgPerKg: loading})
+		u.TakenKg = append(u.TakenKg, (loading-c.ResidualOn(o.Agent))*kg)
+		u.LoadingKgPerKg = append(u.LoadingKgPerKg, loading)
+	}
+	u.NextOutlet, err = steps.OverUsed(c.Mixture, o.In, used, choice.soakHours*3600, c.sorbent(o.Agent, Discard), c.soakRig(choice.stirred))
+	return err
 }
 
 // A lot of the size of a drum is kept in one, a smaller one under a septum.

@@ -54,6 +54,27 @@ func series(m *thermo.Mixture, feed Lot, charges []Charge, sorbent Sorbent, rig 
 	return total, nil
 }
 
+// UsedCharge is a charge that lots have stood over, and what it holds now.
+type UsedCharge struct{ Kg, LoadingKgPerKg float64 }
+
+// OverUsed is what is left (kg/kg) in one more lot that stands over used charges in the
+// same order, each for timeS; NaN where one of them would make it wetter.
+func OverUsed(m *thermo.Mixture, feed Lot, used []UsedCharge, timeS float64, sorbent Sorbent, rig SoakRig) (float64, error) {
+	left := feed
+	for _, u := range used {
+		sorbent.ResidualKgPerKg = u.LoadingKgPerKg
+		o, err := SoakOver(m, left, u.Kg/LotVolume(m, left, rig.TempK), timeS, sorbent, rig)
+		switch {
+		case errors.Is(err, ErrWetSieve):
+			return math.NaN(), nil
+		case err != nil:
+			return math.NaN(), err
+		}
+		left = o.Out
+	}
+	return left.Water(), nil
+}
+
 // waterAfter is what a series leaves, kg/kg, NaN where it does not get so far.
 func waterAfter(m *thermo.Mixture, feed Lot, charges []Charge, sorbent Sorbent, rig SoakRig) float64 {
 	left := feed

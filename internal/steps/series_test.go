@@ -1,6 +1,7 @@
 package steps_test
 
 import (
+	"math"
 	"slices"
 	"strings"
 	"testing"
@@ -125,5 +126,34 @@ func TestSizesOfASeries(t *testing.T) {
 	whole, err := steps.SizeSoak(m, feed, 20e-6, sieve, rig, day(1))
 	if err != nil || one[0] != whole[0] || sizes[1].DoseGrams >= whole[0].DoseGrams {
 		t.Errorf("%+v, %+v, %v", one[0], whole[0], err)
+	}
+}
+
+// One more lot over charges that are as good as fresh is the series itself; over used ones
+// it is wetter, and over full ones there is no drying (needs no outside value). What both
+// took, by hand from their loadings, is what the lot lost.
+func TestOverUsedCharges(t *testing.T) {
+	m, sorbent, rig := mixture(t, "toluene"), sieve3A(t, 0.02), bottle(t, "toluene", 0.2)
+	feed := litres(m, 10, 450e-6)
+	first, err := steps.SoakSeries(m, feed, []steps.Charge{{Kg: 0.3, TimeS: 86400}, {Kg: 0.3, TimeS: 86400}}, sorbent, rig)
+	if err != nil {
+		t.Fatal(err)
+	}
+	over := func(a, b float64) float64 {
+		out, err := steps.OverUsed(m, feed, []steps.UsedCharge{{Kg: 0.3, LoadingKgPerKg: a}, {Kg: 0.3, LoadingKgPerKg: b}}, 86400, sorbent, rig)
+		if err != nil {
+			t.Fatal(err)
+		}
+		return out
+	}
+	near(t, "over fresh charges", over(0.02, 0.02), first.Out.Water(), 1e-9)
+	a, b := first.Figure("loading after, charge 1")/100, first.Figure("loading after, charge 2")/100
+	taken := 0.3*(a-0.02) + 0.3*(b-0.02)
+	near(t, "taken by both; a little stays with the solvent on the beads", taken, first.Balance.WaterInKg-first.Balance.WaterOutKg, 0.02)
+	if again := over(a, b); !(again > first.Out.Water()) {
+		t.Errorf("%g over used charges, %g over fresh ones", again, first.Out.Water())
+	}
+	if wet := over(0.22, 0.22); !math.IsNaN(wet) {
+		t.Errorf("beads that are full leave %g", wet)
 	}
 }

@@ -3,6 +3,7 @@ package study
 import (
 	"fmt"
 	"math"
+	"strings"
 
 	"parch/internal/quantity"
 	"parch/internal/routes"
@@ -17,13 +18,13 @@ func afterwards(k *routes.Case, r *Route) []string {
 	add := func(format string, args ...any) { notes = append(notes, fmt.Sprintf(format, args...)) }
 	for place, s := range r.Run.Route {
 		o := &r.Run.Outcomes[place]
-		if s.Kind != steps.Soak || o.AgentKg == 0 || o.Figure("charges") > 1 {
+		if s.Kind != steps.Soak || o.AgentKg == 0 {
 			continue
 		}
 		if use, err := k.UseOf(&r.Run, place); err == nil {
 			notes = append(notes, sieveUse(k, s.Agent, use))
 		}
-		if o.Figure(steps.LotsServed) > 1 {
+		if o.Figure(steps.LotsServed) > 1 || o.Figure("charges") > 1 {
 			continue
 		}
 		if life, err := k.Life(&r.Run, place); err == nil {
@@ -48,8 +49,16 @@ func afterwards(k *routes.Case, r *Route) []string {
 // it out.
 func sieveUse(k *routes.Case, agent string, u routes.SieveUse) string {
 	a := k.Catalog.Agents[agent]
-	text := fmt.Sprintf("%s: %s have taken %s of water after %s and hold %.2g g/100 g; ", a.Plain(),
-		quantity.FormatMass(u.ChargeKg), quantity.FormatMass(u.TakenKg), lotsWord(u.Lots), 100*u.LoadingKgPerKg)
+	var taken, held []string
+	for i, kg := range u.TakenKg {
+		taken, held = append(taken, quantity.FormatMass(kg)), append(held, fmt.Sprintf("%.2g", 100*u.LoadingKgPerKg[i]))
+	}
+	charge := quantity.FormatMass(u.ChargeKg)
+	if n := len(taken); n > 1 {
+		charge = fmt.Sprintf("%d charges, %s together,", n, charge)
+	}
+	text := fmt.Sprintf("%s: %s have taken %s of water after %s and hold %s g/100 g; ", a.Plain(),
+		charge, strings.Join(taken, " and "), lotsWord(u.Lots), strings.Join(held, " and "))
 	if math.IsNaN(u.NextOutlet) {
 		text += "the next lot would come out wetter than it went in"
 	} else {
@@ -59,7 +68,7 @@ func sieveUse(k *routes.Case, agent string, u routes.SieveUse) string {
 		text += fmt.Sprintf("; of the capacity of new beads %s are left at the last of %s uses (%s lost each time, %s)",
 			quantity.FormatShare(u.CapacityLeft), quantity.Significant(u.Uses, 3), quantity.FormatShare(a.Fade.SI), a.Fade.Confidence)
 	}
-	return text + fmt.Sprintf("; dust, taken as %s a lot (%s), takes %s of fresh beads a year, which the bill leaves to the write-off of the charge",
+	return text + fmt.Sprintf("; dust, taken as %s a lot (%s), takes %s of fresh beads a year, which are not billed",
 		quantity.FormatShare(u.DustShare), k.Catalog.Practice[routes.SieveDust].Confidence, quantity.FormatMass(u.DustKgPerYear))
 }
 
