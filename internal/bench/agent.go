@@ -30,6 +30,10 @@ func (r *reader) agent() {
 		r.mistake(fmt.Sprintf("--agent: %s is not a drying agent of the catalog", quantity.Quote(typed)), hint)
 		return
 	case !slices.Contains(kinds, agent.Kind):
+		if why := r.neverWith(agent); why != "" {
+			r.mistake(fmt.Sprintf("--agent: %s is not for %s, and not for this solvent in any step: %s", agent.Key, r.q.Kind, why), "there is no way to override this; "+r.agentsOffered())
+			return
+		}
 		r.mistake(fmt.Sprintf("--agent: %s is not for %s%s", agent.Key, r.q.Kind, stepFor(agent)), r.agentsOffered())
 		return
 	}
@@ -46,6 +50,22 @@ func findAgent(c *catalog.Catalog, typed string) *catalog.Agent {
 		}
 	}
 	return nil
+}
+
+// neverWith says why an agent must never meet the solvent, with its source, or nothing.
+func (r *reader) neverWith(agent *catalog.Agent) string {
+	if r.q.Solvent == nil {
+		return ""
+	}
+	v, ok := r.cat.Verdict(r.q.Solvent, agent.Key)
+	if !ok || v.Word != "dangerous" {
+		return ""
+	}
+	why := fmt.Sprintf("%s with %s is dangerous: %s", agent.Name, r.q.Solvent.Name, v.Reason)
+	if source, ok := r.cat.Sources[v.Source]; ok {
+		why += fmt.Sprintf(" [%s: %s; %s]", source.ID, source.Reference, v.Confidence)
+	}
+	return why
 }
 
 // stepFor names the step that an agent belongs to.
