@@ -1,6 +1,7 @@
 package workbook
 
 import (
+	"fmt"
 	"slices"
 	"strings"
 
@@ -30,6 +31,9 @@ func (rs *remarks) add(level, text string, lot int, routes ...string) {
 	rs.all = append(rs.all, &remark{level, text, map[int][]string{lot: routes}})
 }
 
+// mostLotsNamed lots are named beside a text that holds for routes of each.
+const mostLotsNamed = 4
+
 // whom names lots and routes in as few words as possible.
 func (l *layout) whom(r *remark) string {
 	var parts []string
@@ -44,11 +48,14 @@ func (l *layout) whom(r *remark) string {
 		case len(ids) == len(lot.routes):
 			parts = append(parts, lot.Job.Name+": every route")
 		default:
-			parts, every = append(parts, lot.Job.Name+": "+strings.Join(ids, ", ")), false
+			parts, every = append(parts, lot.Job.Name+": "+listed(ids, mostListed/min(len(r.routes), mostLotsNamed))), false
 		}
 	}
 	if every && len(parts) > 0 {
 		return "every route"
+	}
+	if len(parts) > mostLotsNamed {
+		parts = append(parts[:mostLotsNamed], fmt.Sprintf("and %d lots more", len(parts)-mostLotsNamed))
 	}
 	return strings.Join(parts, "; ")
 }
@@ -72,23 +79,6 @@ func (g *grid) entry(row int, l look, a, b, c string) {
 	g.put(1, row, text(l, oneLine(a)))
 	g.across(listRoutes, listText-1, row, l, b)
 	g.across(listText, g.printColumns, row, l, c)
-}
-
-func (l *layout) excludedBlock(g *grid) {
-	row := 0
-	for _, lot := range l.lots {
-		var rs remarks
-		for _, x := range lot.Excluded {
-			rs.add("", cited(x.Reason, x.Source), lot.no, x.ID)
-		}
-		for _, r := range rs.all {
-			if row == 0 {
-				row = l.listBlock(g, "Not offered, and why", "Lot", "Routes", "Reason and source")
-			}
-			g.entry(row, words, lot.Job.Name, strings.Join(r.routes[lot.no], ", "), r.text)
-			row++
-		}
-	}
 }
 
 func cited(s, source string) string {

@@ -20,11 +20,22 @@ func (g *grid) height(row int) float64 {
 		p := paints[c.look]
 		lines := 1
 		if s, ok := c.value.(string); ok && p.wrap && i < len(g.widths) {
-			lines = wrapped(s, g.roomFor(i+1, row), p.size, p.bold || g.mayBeBold(i+1, row))
+			lines = wrapped(s, g.roomFor(i+1, row)*c.spared(), p.size, p.bold || g.mayBeBold(i+1, row))
 		}
 		tall = max(tall, float64(lines)*lineHeight*p.size/10)
 	}
 	return min(tallest, tall+2)
+}
+
+// headingSpared is the share of its room that a heading is laid out in: its few words
+// break elsewhere in another typeface.
+const headingSpared = 0.92
+
+func (c cell) spared() float64 {
+	if c.look == heading {
+		return headingSpared
+	}
+	return 1
 }
 
 // linesHigh is the height of a row of some lines of text.

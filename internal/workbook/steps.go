@@ -35,7 +35,7 @@ func (l *layout) allSteps() (out []stepModel) {
 }
 
 func (l *layout) steps() *grid {
-	widths := []float64{15, 22, 7, 6.5, 9, 11, 9, 9, 9, 9, 9, 9, 9, 9, 9, 27, 14, 9}
+	widths := []float64{15, 22, 7, 6.5, 9.5, 11, 10, 10.5, 10.5, 9.5, 10, 9.5, 10, 9.5, 9.5, 27, 14, 10}
 	g := newGrid(sheetSteps, "What each step does. The blocks of lots and steps follow the inputs by the closed forms and curves of the program; the column State says where only a new run can.",
 		tabWork, checkCell(), widths...)
 	g.mixed, g.frozenRows, g.frozenColumns = true, frameRows, 3 // the blocks share only these columns
@@ -49,7 +49,7 @@ func (l *layout) steps() *grid {
 	for _, b := range append(l.blocks, l.lotRows) {
 		widest = max(widest, b.column(b.columns[len(b.columns)-1].key))
 	}
-	g.widths = append(g.widths, slices.Repeat([]float64{10}, max(0, widest-stepPlace))...)
+	g.widths = append(g.widths, slices.Repeat([]float64{12}, max(0, widest-stepPlace))...)
 	g.printColumns = stepState
 	for _, r := range []rows{l.resultRows, l.flowRows} {
 		if !r.empty() {
