@@ -92,7 +92,9 @@ func (l *layout) chargeWords(r *routeModel, o *steps.Outcome, sieve string) stri
 		} else {
 			s += fmt.Sprintf(" in %s, bed %s long", strings.ReplaceAll(o.Apparatus, "-", " "), quantity.FormatLength(o.Figure("bed length")))
 		}
-		if lot.SieveHistoryK > 0 {
+		if lot.SieveTreatment != "" {
+			s += "; beads: " + oneLine(lot.SieveTreatment)
+		} else if lot.SieveHistoryK > 0 {
 			s += "; beads activated at " + quantity.FormatTemperature(lot.SieveHistoryK)
 		} else if lot.SieveHistory != "" {
 			s += "; beads: " + strings.ReplaceAll(lot.SieveHistory, "-", " ")

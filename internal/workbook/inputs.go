@@ -6,6 +6,7 @@ import (
 	"strings"
 
 	"parch/internal/costs"
+	"parch/internal/job"
 	"parch/internal/quantity"
 )
 
@@ -154,12 +155,24 @@ func (l *layout) lotFirst(g *grid, lot *lotModel) {
 	enter("free_water", "Free water", tidy(j.FreeWaterM3*1e6), "mL", "job file; stands below the batch", lot.after(), 0, mostLitres)
 	enter("vessel_height", "Liquid height in the vessel", j.VesselHeightM, "m", "job file; 0: a vessel as deep as it is wide", lot.after(), 0, 20)
 	enter("heater", "Heater", j.HeaterW, "W", "job file; 0: the heater of the still", lot.after(), 0, 1e6)
-	history := "no history is given"
-	if j.SieveHistory != "" {
-		history = "from the sieve's history: " + j.SieveHistory
-	}
-	enter("residual_loading", "Water on the sieve before use", j.ResidualLoading*100, "g/100 g", history, lot.after(), 0, 20)
+	enter("residual_loading", "Water on the sieve before use", j.ResidualLoading*100, "g/100 g", historyWords(j), lot.after(), 0, 20)
 	enter("target_water", "Target", lot.target, "mg/kg", "job file", lot.after(), 0, mostWater)
+}
+
+// historyWords say where the water on a sieve comes from, and what of it is assumed.
+func historyWords(j job.Lot) string {
+	switch {
+	case j.ResidualStated:
+		return "stated in the job file; not checked"
+	case j.SieveTreatment != "" && j.ResidualBand != nil:
+		return fmt.Sprintf("added up from %q: what handling and standing add is assumed, %s to %s in all; another sorbent by its own isotherm", oneLine(j.SieveTreatment),
+			significant(100*j.ResidualLoading*j.ResidualBand.Low), significant(100*j.ResidualLoading*j.ResidualBand.High))
+	case j.SieveHistory != "":
+		return "from the sieve's history: " + j.SieveHistory
+	case j.SieveHistoryK > 0:
+		return "activated at " + quantity.FormatTemperature(j.SieveHistoryK) + ": between histories of the catalog"
+	}
+	return "no history is given"
 }
 
 // routeSettings are the free choices of the routes, which the closed forms read by

@@ -31,6 +31,17 @@ lots:
   - {name: "out of reach", solvent: toluene, batch: 18 L, batches: 4 /yr, water: 480 mg/kg, target: 0.5 mg/kg}
   - {name: "حمض 🧪", solvent: tetrahydrofuran, batch: 10 L, batches: 24 /yr, water: 300 mg/kg, target: 20 mg/kg}
 `,
+	"two currencies": `
+title: Two currencies
+date: 2026-12-01
+rates: [{from: USD, rate: 0.92, date: 2026-11-01}]
+exclude: {steps: [forerun]}
+prices:
+  - {item: sieve-3a, pack: 25 kg, price: 250 USD, date: 2026-10-01}
+  - {item: toluene, pack: 20 L, price: 118 EUR, date: 2026-10-01}
+lots:
+  - {name: kept open, solvent: toluene, batch: 18 L, batches: 40 /yr, water: 480 mg/kg, target: 30 mg/kg, sieve history: "300 °C, left open 1 h"}
+`,
 	"nothing left": `
 title: Nothing left
 exclude: {steps: [soak, column, salt, reactive, buy, trap, forerun, settle]}
