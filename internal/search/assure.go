@@ -46,9 +46,8 @@ func (t *Tuner) Assured(r routes.Route, run routes.Run, a Assurance) (routes.Run
 	return best.run, nil
 }
 
-// soaked is the best sure run over the stands of the last soak, each with a few numbers of
-// lots over its charge and with several charges, and over all of them at the best stand;
-// or the shortest that is as good.
+// soaked is the best sure run over the stands of the last soak, each with every number of
+// lots over its charge and with several charges; or the shortest that is as good.
 func (l *lifting) soaked(run routes.Run) (trial, error) {
 	best := trial{score: math.Inf(1)}
 	g, err := l.t.prepare(l.route)
@@ -59,19 +58,11 @@ func (l *lifting) soaked(run routes.Run) (trial, error) {
 	if err != nil {
 		return best, err
 	}
-	starts, err := l.starts(run, stands, l.t.fewMeetings())
+	starts, err := l.starts(run, stands, l.t.meetings())
 	if err != nil {
 		return best, err
 	}
 	if best, err = l.best(starts, best); err != nil || best.run.Route == nil {
-		return best, err
-	}
-	last := len(run.Settings.SoakHours) - 1
-	near, err := l.starts(run, []stand{{best.run.Settings.SoakHours[last], best.run.Settings.Stirred[last]}}, l.t.meetings())
-	if err != nil {
-		return best, err
-	}
-	if best, err = l.best(near, best); err != nil {
 		return best, err
 	}
 	return l.sooner(starts, best)

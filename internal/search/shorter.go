@@ -8,9 +8,9 @@ import (
 )
 
 // Tie is the share of the objective by which a shorter run may be worse than the best
-// and is still taken: a week over sieve that saves a tenth of a per cent is nobody's
+// and is still taken: eight weeks over sieve that save two thousandths are nobody's
 // choice, and no cost is known as well as that (assumption).
-const Tie = 1e-3
+const Tie = 3e-3
 
 // tied reports whether a score is as good as the lowest, as Tie has it.
 func tied(score, lowest float64) bool { return score <= lowest*(1+Tie) }

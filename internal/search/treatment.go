@@ -35,18 +35,6 @@ func (t *Tuner) meetings() (all []meeting) {
 	return all
 }
 
-// fewMeetings are the two ends and the middle of the lots, and several charges.
-func (t *Tuner) fewMeetings() (few []meeting) {
-	all := t.meetings()
-	lots := slices.IndexFunc(all, func(m meeting) bool { return m.charges > 1 })
-	for _, i := range []int{0, lots / 2, lots - 1} {
-		if !slices.Contains(few, all[i]) {
-			few = append(few, all[i])
-		}
-	}
-	return append(few, all[lots:]...)
-}
-
 func setCharges(s *routes.Settings, soak, n int) { s.Charges = placed(s.Charges, soak, n) }
 
 func setLotsOverCharge(s *routes.Settings, soak, n int) {
