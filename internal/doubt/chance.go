@@ -11,12 +11,12 @@ func (l *Lot) Sure(run *routes.Run, limits Limits, level float64) (bool, error) 
 		return false, err
 	}
 	for i := t.seen; !t.done; i++ {
-		t.decided(i, f.water[i])
+		t.decided(f.water[i])
 	}
 	return t.reached(t.met), nil
 }
 
-// tally counts the draws that keep to the limits, in their order, until the rest
+// tally counts the draws that keep to the limits, one after the other, until the rest
 // makes no difference.
 type tally struct {
 	limits    Limits
@@ -28,13 +28,12 @@ type tally struct {
 
 func (t *tally) reached(met int) bool { return float64(met)/float64(t.n) >= t.level }
 
-// decided takes note of the water (kg/kg) of draw i; draws that were passed over
-// have failed. A nil tally is never decided.
-func (t *tally) decided(i int, water float64) bool {
+// decided takes note of the water (kg/kg) of the next draw. A nil tally is never decided.
+func (t *tally) decided(water float64) bool {
 	if t == nil {
 		return false
 	}
-	t.seen = i + 1
+	t.seen++
 	if t.limits.Met(water) {
 		t.met++
 	}

@@ -135,17 +135,25 @@ func (f *flow) carried(place int) bool {
 
 // dry sets the water of every draw that has not failed yet; not ok fails one.
 func (f *flow) dry(leave func(i int, a *steps.Aside) (water float64, ok bool)) {
-	for i := range f.water {
-		if math.IsInf(f.water[i], 1) {
-			continue
+	f.dryIn(nil, leave)
+}
+
+// dryIn is dry in an order, which tells sooner where the draws are only counted.
+func (f *flow) dryIn(order []int, leave func(i int, a *steps.Aside) (water float64, ok bool)) {
+	for k := range f.water {
+		i := k
+		if order != nil && f.tally != nil {
+			i = order[k]
 		}
-		a := f.lot.asides[i]
-		water, ok := leave(i, &a)
-		if !ok || !(water > 0 && water < 1) || !(f.kg[i] > 0) {
-			water = math.Inf(1)
+		if !math.IsInf(f.water[i], 1) {
+			a := f.lot.asides[i]
+			water, ok := leave(i, &a)
+			if !ok || !(water > 0 && water < 1) || !(f.kg[i] > 0) {
+				water = math.Inf(1)
+			}
+			f.water[i] = water
 		}
-		f.water[i] = water
-		if f.tally.decided(i, water) {
+		if f.tally.decided(f.water[i]) {
 			return
 		}
 	}
@@ -191,7 +199,7 @@ func (f *flow) soak(place int) (turn, error) {
 	}
 	rate := f.lot.stillRateOr(f.run.Settings.StirredAt(f.run.Route, place))
 	loading, residual := f.lot.loading(f.run.Route[place].Agent), f.lot.residualOn(f.run.Route[place].Agent)
-	f.dry(func(i int, a *steps.Aside) (float64, bool) {
+	f.dryIn(f.lot.wettest(f.run.Route[place].Agent), func(i int, a *steps.Aside) (float64, bool) {
 		a.Loading, a.ResidualKgPerKg, a.Rate = loading[i], residual[i], rate[i]
 		return quick.Water(f.water[i], f.kg[i], a), true
 	})
@@ -213,7 +221,7 @@ func (f *flow) column(place int) (turn, error) {
 	}
 	loading, residual, rate := f.lot.loading(f.run.Route[place].Agent), f.lot.residualOn(f.run.Route[place].Agent), f.lot.columnRate()
 	t := f.pumped(place)
-	f.dry(func(i int, a *steps.Aside) (float64, bool) {
+	f.dryIn(f.lot.wettest(f.run.Route[place].Agent), func(i int, a *steps.Aside) (float64, bool) {
 		a.Loading, a.ResidualKgPerKg, a.Rate = loading[i], residual[i], rate[i]
 		return quick.Water(f.water[i], f.kg[i], a)
 	})

@@ -1,6 +1,7 @@
 package doubt
 
 import (
+	"cmp"
 	"fmt"
 	"math"
 	"slices"
@@ -122,6 +123,23 @@ func (l *Lot) loading(agent string) []float64 {
 		return constant(1, l.n)
 	}
 	return l.column(spread.Factor(nameLoading+a.Name, a.LoadingBand, fmt.Sprintf("isotherm, a factor of %.3g either way", a.LoadingBand)))
+}
+
+// wettest are the draws in the order of what a sorbent leaves in them, about: first those
+// in which it starts with much water and holds little.
+func (l *Lot) wettest(agent string) []int {
+	return l.order.Of(agent, func() []int {
+		const some = 0.01 // kg/kg taken up
+		loading, residual := l.loading(agent), l.residualOn(agent)
+		order := make([]int, l.n)
+		for i := range order {
+			order[i] = i
+		}
+		slices.SortStableFunc(order, func(a, b int) int {
+			return cmp.Compare((residual[b]+some)/loading[b], (residual[a]+some)/loading[a])
+		})
+		return order
+	})
 }
 
 func constant(value float64, n int) []float64 {

@@ -30,6 +30,7 @@ type Lot struct {
 	asides []steps.Aside                          // shifts only
 	holds  memo.Map[float64, *steps.Solubilities] // by temperature
 	ahead  memo.Map[string, result[wetness]]
+	order  memo.Map[string, []int] // of the draws, by sorbent
 	nodes  *memo.Map[float64, result[*nodes]]
 	boiled *memo.Map[string, result[*surface]]
 

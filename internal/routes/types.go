@@ -49,8 +49,8 @@ func (r Route) count(kinds ...steps.Kind) int {
 	return n
 }
 
-// leastAim is the driest that a step is sized for, mg/kg.
-const leastAim = 1e-3
+// LeastAimMgPerKg is the driest that a step is sized for.
+const LeastAimMgPerKg = 1e-3
 
 // leastKPa and mostKPa are the pressures that a still is run at.
 const leastKPa, mostKPa = 1, 110
@@ -184,8 +184,8 @@ func (s Settings) Fit(r Route) error {
 	if traps := r.count(steps.Trap); len(s.Receiver) > traps || len(s.ReceiverC) > traps {
 		return fmt.Errorf("%s: %w: %d receivers, %d receiver temperatures for %d traps", r.ID(), ErrSettings, len(s.Receiver), len(s.ReceiverC), traps)
 	}
-	if s.AimMgPerKg != 0 && !(s.AimMgPerKg >= leastAim && s.AimMgPerKg < 1e6) {
-		return fmt.Errorf("%s: %w: an aim of %g mg/kg; %g to 1000000 are allowed, or 0 for the acceptance limit", r.ID(), ErrSettings, s.AimMgPerKg, leastAim)
+	if s.AimMgPerKg != 0 && !(s.AimMgPerKg >= LeastAimMgPerKg && s.AimMgPerKg < 1e6) {
+		return fmt.Errorf("%s: %w: an aim of %g mg/kg; %g to 1000000 are allowed, or 0 for the acceptance limit", r.ID(), ErrSettings, s.AimMgPerKg, LeastAimMgPerKg)
 	}
 	if n := r.carriersBefore(len(r)); len(s.CarrierDose) != n {
 		return fmt.Errorf("%s: %w: %d doses for %d carriers", r.ID(), ErrSettings, len(s.CarrierDose), n)

@@ -13,11 +13,9 @@ type Assurance struct {
 	Sure func(run *routes.Run) (bool, error) // whether its chance reaches the assurance
 }
 
-// Sizes of the search for an aim.
-const (
-	driestAim = 1.0 / 30 // of the limit, the lowest aim that is tried
-	aimTries  = 7        // bisections of ln(aim)
-)
+// aimTries are the bisections of ln(aim) between the driest that a step can do and the
+// limit.
+const aimTries = 8
 
 // Assured tightens a tuned run until its chance reaches the assurance. A run is
 // tuned so that with everything at its typical value it just ends at the limit, so
@@ -56,6 +54,9 @@ func (l *lifting) soaked(run routes.Run) (trial, error) {
 	}
 	stands, err := g.standsOnOffer()
 	if err != nil {
+		return best, err
+	}
+	if vain, err := l.hopeless(run, stands); err != nil || vain {
 		return best, err
 	}
 	starts, err := l.starts(run, stands, l.t.meetings())
@@ -120,21 +121,25 @@ type lifting struct {
 	Assurance
 	t     *Tuner
 	route routes.Route
-	vain  []*routes.Run // with the driest aim, and not sure
+	vain  []*routes.Run // not sure
 }
 
-// lifted finds the highest aim at which a run is sure enough. The lower the aim, the
-// worse the score: it is left where an aim that is not sure enough scores above most.
+// lifted finds the highest aim at which a run is sure enough and scores no more than
+// most. The lower the aim, the surer and the worse: what is not sure at the lowest aim
+// that is good enough is left.
 func (l *lifting) lifted(start trial, most float64) (trial, bool, error) {
-	limit := l.t.Case.Goal() * 1e6
-	low, high := significant(limit*driestAim, 2), limit
-	best, sure, err := l.driest(start, low)
-	if err != nil || !sure && l.t.Case.AcceptFrom() == 0 { // no aim is
-		return trial{}, false, err
-	}
-	if asIs, err := l.Sure(&start.run); err != nil || asIs || !sure {
+	if asIs, err := l.Sure(&start.run); err != nil || asIs {
 		return start, asIs, err
 	}
+	best, err := l.worth(start, most)
+	if err != nil || best.run.Route == nil || l.inVain(&best.run) {
+		return trial{}, false, err
+	}
+	if sure, err := l.Sure(&best.run); err != nil || !sure {
+		l.vain = append(l.vain, &best.run)
+		return trial{}, false, err
+	}
+	low, high := math.Max(best.run.Settings.AimMgPerKg, best.run.WaterOut*1e6), l.t.Case.Goal()*1e6
 	for range aimTries {
 		aim := significant(math.Sqrt(low*high), 2)
 		if aim <= low || aim >= high {
@@ -150,28 +155,40 @@ func (l *lifting) lifted(start trial, most float64) (trial, bool, error) {
 				return trial{}, false, err
 			}
 		}
-		switch {
-		case sure:
+		if sure {
 			best, low = found, aim
-		case found.score > most:
-			return trial{}, false, nil
-		default:
+		} else {
 			high = aim
 		}
 	}
 	return best, true, nil
 }
 
-// driest is a run with the driest aim that is tried, and whether it is sure.
-func (l *lifting) driest(start trial, aim float64) (found trial, sure bool, err error) {
-	found, err = l.aimed(start, aim)
-	if err != nil || found.run.Route == nil || l.inVain(&found.run) {
-		return trial{}, false, err
+// worth is the run with the lowest aim that scores no more than most, to a few per cent
+// of the aim; without a route where none does.
+func (l *lifting) worth(start trial, most float64) (trial, error) {
+	best, err := l.aimed(start, routes.LeastAimMgPerKg)
+	if err != nil || best.run.Route == nil || best.score <= most {
+		return best, err
 	}
-	if sure, err = l.Sure(&found.run); !sure {
-		l.vain = append(l.vain, &found.run)
+	low, high := best.run.WaterOut*1e6, l.t.Case.Goal()*1e6
+	best = trial{}
+	for range aimTries {
+		aim := significant(math.Sqrt(low*high), 2)
+		if aim <= low || aim >= high {
+			break
+		}
+		found, err := l.aimed(start, aim)
+		if err != nil {
+			return trial{}, err
+		}
+		if found.run.Route != nil && found.score <= most {
+			best, high = found, aim
+		} else {
+			low = aim
+		}
 	}
-	return found, sure, err
+	return best, nil
 }
 
 // aimed is a run with its last step sized for an aim (mg/kg); without a route where

@@ -25,7 +25,7 @@ type Crossing struct {
 const CloseEnough = 1e-4
 
 // tolerance of ln(x) at a root.
-const lnTolerance = 1e-11
+const lnTolerance = 1e-8
 
 // Cross finds where the order of two sides changes between lo and hi: at points
 // spaced evenly in the logarithm the sign of the difference is looked for, the

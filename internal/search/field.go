@@ -14,6 +14,7 @@ type Field struct {
 	Tuner  *Tuner // its objective is the cost
 	Routes []routes.Route
 	Warm   map[string]routes.Settings // by route id: where to start looking
+	Learns bool                       // what is found is where to start the next time
 }
 
 // Won is the cheapest route of a field that reaches the limit and has its prices.
@@ -59,6 +60,9 @@ func (f Field) Cheapest(floors map[string]float64, most float64) (Won, map[strin
 			return best, nil, err
 		}
 		found[l.id] = cost
+		if _, known := f.Warm[l.id]; f.Learns && !known && !math.IsInf(cost, 1) {
+			f.Warm[l.id] = run.Settings
+		}
 		if cost < best.Cost {
 			best.Route, best.Run, best.Cost = l.route, run, cost
 		}

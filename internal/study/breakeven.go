@@ -109,11 +109,14 @@ func (s *sides) duel(x float64) (one, other float64, err error) {
 // families asks where the cheapest of one kind of routes changes places with the
 // cheapest of another kind.
 func (q *question) families(b BreakEven, known *floors, at func(float64) *search.Tuner, first, second func(routes.Route) bool) (*BreakEven, error) {
+	warm := maps.Clone(q.warm)
 	s := sides{at: at, floors: known, field: func(t *search.Tuner, isFirst bool) search.Field {
+		f := q.field(t, second)
 		if isFirst {
-			return q.field(t, first)
+			f = q.field(t, first)
 		}
-		return q.field(t, second)
+		f.Warm, f.Learns = warm, true
+		return f
 	}}
 	c, err := search.Cross(s.duel, b.From, b.To, b.Now, points)
 	if err != nil {

@@ -7,7 +7,6 @@ import (
 
 	"parch/internal/routes"
 	"parch/internal/search"
-	"parch/internal/steps"
 )
 
 // chains looks for the chains of a lot, the short ones first. A chain is carried on
@@ -37,9 +36,6 @@ func (l *Lot) search(ctx context.Context, w *work, t *search.Tuner) (*search.Mar
 	s.bounds = t.NewBounds(s.steps)
 	single := slices.DeleteFunc(slices.Clone(usual), func(r routes.Route) bool { return len(r) > 1 })
 	if err := s.run(ctx, single); err != nil {
-		return nil, err
-	}
-	if err := s.otherSettings(ctx, single); err != nil {
 		return nil, err
 	}
 	always := slices.DeleteFunc(slices.Clone(usual), func(r routes.Route) bool { return len(r) == 1 || !asked(r) && r.CarrierOf() == "" })
@@ -209,45 +205,4 @@ func (s *chains) mark(run *routes.Run) error {
 	}
 	s.marks.Set(run.Route, m)
 	return err
-}
-
-// otherSettings marks what the soaks come to when they are tuned for something else:
-// a chain that one of these beats is no better for being chosen by the objective.
-func (s *chains) otherSettings(ctx context.Context, single []routes.Route) error {
-	type task struct {
-		route routes.Route
-		by    search.Objective
-	}
-	var tasks []task
-	for _, r := range single {
-		for _, by := range search.Objectives {
-			if r[0].Kind == steps.Soak && (s.tuner.Mix != nil || by != s.tuner.Objective) {
-				tasks = append(tasks, task{r, by})
-			}
-		}
-	}
-	runs := make([]*routes.Run, len(tasks))
-	err := atOnce(ctx, len(tasks), func(i int) error {
-		other := *s.tuner
-		other.Mix, other.Objective = nil, tasks[i].by
-		run, err := s.work.tune(&other, tasks[i].route)
-		if _, refused := refusal(err); refused {
-			return nil
-		}
-		if err == nil && len(other.Book.Missing(run.Uses)) == 0 {
-			runs[i] = &run
-		}
-		return err
-	})
-	if err != nil {
-		return err
-	}
-	for _, run := range runs {
-		if run != nil {
-			if err := s.mark(run); err != nil {
-				return err
-			}
-		}
-	}
-	return nil
 }
