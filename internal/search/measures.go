@@ -73,6 +73,16 @@ func (m *Marks) Set(r routes.Route, measures Measures) {
 	m.all = append(m.all, mark{r.ID(), measures})
 }
 
+// CostOf is the cost a litre of the route with an id, where it is marked.
+func (m *Marks) CostOf(id string) (perLitre float64, ok bool) {
+	for _, mark := range m.all {
+		if mark.id == id {
+			return mark.PerLitre, true
+		}
+	}
+	return 0, false
+}
+
 // Beats names a route, other than the chain itself, that costs no more than all the
 // bounds of a chain, is no worse by the objective, and from which the chain saves
 // next to nothing in attended time, energy and waste; "" where there is none.

@@ -3,10 +3,12 @@ package study
 import (
 	"context"
 	"fmt"
+	"math"
 	"slices"
 
 	"parch/internal/routes"
 	"parch/internal/search"
+	"parch/internal/steps"
 )
 
 // chains looks for the chains of a lot, the short ones first. A chain is carried on
@@ -36,6 +38,9 @@ func (l *Lot) search(ctx context.Context, w *work, t *search.Tuner) (*search.Mar
 	s.bounds = t.NewBounds(s.steps)
 	single := slices.DeleteFunc(slices.Clone(usual), func(r routes.Route) bool { return len(r) > 1 })
 	if err := s.run(ctx, single); err != nil {
+		return nil, err
+	}
+	if err := s.otherSettings(ctx); err != nil {
 		return nil, err
 	}
 	always := slices.DeleteFunc(slices.Clone(usual), func(r routes.Route) bool { return len(r) == 1 || !asked(r) && r.CarrierOf() == "" })
@@ -205,4 +210,56 @@ func (s *chains) mark(run *routes.Run) error {
 	}
 	s.marks.Set(run.Route, m)
 	return err
+}
+
+// otherSettings marks what the best of the single soaks comes to when it is tuned for
+// something else: a chain that one of these beats is no better for being chosen by the
+// objective.
+func (s *chains) otherSettings(ctx context.Context) error {
+	r := s.bestSoak()
+	if r == nil {
+		return nil
+	}
+	var others []search.Objective
+	for _, by := range search.Objectives {
+		if s.tuner.Mix != nil || by != s.tuner.Objective {
+			others = append(others, by)
+		}
+	}
+	runs := make([]*routes.Run, len(others))
+	err := atOnce(ctx, len(others), func(i int) error {
+		other := *s.tuner
+		other.Mix, other.Objective = nil, others[i]
+		run, err := s.work.tune(&other, r)
+		if _, refused := refusal(err); refused {
+			return nil
+		}
+		if err == nil && len(other.Book.Missing(run.Uses)) == 0 {
+			runs[i] = &run
+		}
+		return err
+	})
+	if err != nil {
+		return err
+	}
+	for _, run := range runs {
+		if run != nil {
+			if err := s.mark(run); err != nil {
+				return err
+			}
+		}
+	}
+	return nil
+}
+
+// bestSoak is the single soak that is marked with the least cost; nil where none is.
+func (s *chains) bestSoak() (best routes.Route) {
+	least := math.Inf(1)
+	for i := range s.lot.Routes {
+		r := &s.lot.Routes[i]
+		if cost, ok := s.marks.CostOf(r.ID); ok && cost < least && len(r.Run.Route) == 1 && r.Run.Route[0].Kind == steps.Soak {
+			best, least = r.Run.Route, cost
+		}
+	}
+	return best
 }
