@@ -139,6 +139,11 @@ func (f Field) cost(r routes.Route, id string) (routes.Run, float64, error) {
 		warm = &s
 	}
 	run, err := f.Tuner.TuneFrom(r, warm)
+	if _, kept := f.Tuner.kept(r); kept && soaks(r) > 0 && err == nil && !run.Meets {
+		longer := *f.Tuner
+		longer.standsLonger = true
+		run, err = longer.TuneFrom(r, warm)
+	}
 	switch {
 	case errors.Is(err, ErrTooSlow) || errors.Is(err, routes.ErrRefused):
 		return run, math.Inf(1), nil

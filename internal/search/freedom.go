@@ -94,8 +94,10 @@ func (t *Tuner) axes(r routes.Route, stands []stand) (all []axis) {
 				all = append(all, later(oneOf(pressures, func(s *routes.Settings, kPa float64) { s.PressureKPa[k] = kPa })))
 			}
 		case steps.Soak:
-			all = append(all, standsOf(stands, k))
-			if _, kept := t.kept(r); !kept {
+			if kept, ok := t.kept(r); ok {
+				all = append(all, standsOf(kept.standsOf(k, stands, t.standsLonger), k))
+			} else {
+				all = append(all, standsOf(stands, k))
 				all = append(all, later(oneOf(t.lotsOverCharge(), func(s *routes.Settings, n int) { setLotsOverCharge(s, k, n) })))
 				all = append(all, later(oneOf(chargesTried, func(s *routes.Settings, n int) { setCharges(s, k, n) })))
 			}

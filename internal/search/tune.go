@@ -36,7 +36,9 @@ type Tuner struct {
 
 	// Kept is what is not tuned of a route; false where all is. nil: all of each.
 	Kept func(routes.Route) (Kept, bool)
-	Stop func() error // why no more runs are to be made; nil: never
+
+	standsLonger bool         // than what is kept
+	Stop         func() error // why no more runs are to be made; nil: never
 }
 
 // Run carries out a route and arranges its uses as the site pays for them.

@@ -22,7 +22,7 @@ func TestATimeLimitMakesNothingCheaper(t *testing.T) {
 		"solvent: dimethylformamide, water: 1000 mg/kg, target: 20 mg/kg",
 	} {
 		cost := func(limit string) float64 {
-			r := compare(t, fmt.Sprintf("lots:\n  - {name: lot, %s, batch: 20 L, batches: 40 /yr%s}\n", lot, limit), study.Options{Draws: 400, Seed: 1})
+			r := compare(t, fmt.Sprintf("currency: EUR\nsite: {room: 20 °C, technician: 48 EUR/h, electricity: 0.24 EUR/kWh}\nlots:\n  - {name: lot, %s, batch: 20 L, batches: 40 /yr%s}\n", lot, limit), study.Options{Draws: 400, Seed: 1})
 			best := r.Lots[0].Best()
 			if best == nil || !best.Recommended {
 				t.Fatalf("%s: nothing is sure", lot)
