@@ -30,6 +30,7 @@ func TestATimeLimitMakesNothingCheaper(t *testing.T) {
 			return best.Bill.PerLitre.InexactFloat64()
 		}
 		free, week := cost(""), cost(", needed within: 168 h")
+		t.Log(lot, free, week)
 		if free > week*(1+search.Tie) {
 			t.Errorf("%s: %.5g a litre, and %.5g where it has to be done in a week", lot, free, week)
 		}
