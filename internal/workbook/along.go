@@ -36,7 +36,9 @@ func (l *layout) alongBlock(g *grid) {
 	if most == 0 {
 		return
 	}
-	g.breaks = append(g.breaks, g.next()-1) // pages of charts are counted from here
+	if page, _ := g.pageRoom(); g.span(1, g.last()) > page/2 {
+		g.breaks = append(g.breaks, g.next()-1) // pages of charts are counted from here
+	}
 	columns := []column{{name: "Lot"}, {name: "Route id"}, {"First step no", "1"}, {"Start", "mg/kg"}}
 	for i := range most {
 		columns = append(columns, column{fmt.Sprintf("After step %d", i+1), "mg/kg"})

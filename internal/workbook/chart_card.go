@@ -35,12 +35,22 @@ func courseOf(r *routeModel) drawnCourse {
 		return d
 	}
 	d := drawnCourse{name: fmt.Sprintf("Step %d, %s", place, o.Kind)}
-	points := spaced(len(o.Course), cardPoints)
 	for i := range d.water {
-		p := o.Course[points[min(i, len(points)-1)]]
-		d.hours[i], d.water[i] = tidy(p.Hours), tidy(max(p.Water*mgPerKg, lowestPlotted))
+		hours, water := between(o.Course, float64(i)/(cardPoints-1))
+		d.hours[i], d.water[i] = tidy(hours), tidy(max(water*mgPerKg, lowestPlotted))
 	}
 	return d
+}
+
+// between is the course at a share of its points: hours by straight lines, water
+// (kg/kg) by straight lines on the logarithmic axis, as the chart draws them. A course of
+// few points is drawn at places of its own, none twice.
+func between(course []steps.Point, share float64) (hours, water float64) {
+	at := share * float64(len(course)-1)
+	i := min(int(at), len(course)-2)
+	a, b, part := course[i], course[i+1], at-float64(i)
+	low := lowestPlotted / mgPerKg
+	return a.Hours + part*(b.Hours-a.Hours), max(a.Water, low) * math.Pow(max(b.Water, low)/max(a.Water, low), part)
 }
 
 const (

@@ -18,6 +18,7 @@ const (
 
 // rangeCharts draws the range of the cost per litre of the first routes of each lot.
 func (l *layout) rangeCharts(g *grid) {
+	second := false // to be drawn on the page of the one before
 	for _, lot := range l.lots[:min(len(l.lots), mostLotsDrawn)] {
 		var drawn []*routeModel
 		for _, r := range lot.routes {
@@ -26,10 +27,14 @@ func (l *layout) rangeCharts(g *grid) {
 			}
 		}
 		if len(drawn) > 0 {
-			if len(g.charts)%2 == 0 { // two fit on a page
-				g.breaks = append(g.breaks, g.below()-1)
-			}
+			start, breaks := g.below(), len(g.breaks)
 			l.rangeChart(g, lot, drawn)
+			if second { // two fit on a page that holds nothing else
+				second = false
+				continue
+			}
+			g.together(start)
+			second = len(g.breaks) > breaks
 		}
 	}
 }

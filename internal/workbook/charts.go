@@ -116,16 +116,39 @@ func (g *grid) draw(column, row, width, height int, name string, c *excelize.Cha
 }
 
 // roomForChart is the next free row. A page break goes before it where a chart of
-// that height would be cut by the end of the printed page, and before the first chart,
-// as a long table above it ends where the reader's heights of rows have it.
+// that height would be cut by the end of the printed page, and before the first chart
+// where the table above it is long: that ends where the reader's heights of rows have it.
 func (g *grid) roomForChart(points float64) int {
 	row := max(g.last(), g.drawnTo()) + 2
-	page := 0.85 * printableHeight / g.scale() // readers differ in the scale and in the height of rows
-	titles := g.span(g.titles())
-	if used := g.pageUsed(row, page, titles); len(g.charts) == 0 || used+points > page && points < page-titles {
+	page, titles := g.pageRoom()
+	first := len(g.charts) == 0 && g.span(g.pageStart(), row) > page-titles-points
+	if used := g.pageUsed(row, page, titles); first || used+points > page && points < page-titles {
 		g.breaks = append(g.breaks, row-1) // the frame of the chart needs a little room above
 	}
 	return row
+}
+
+// pageRoom is how much a printed page holds and how much of it the repeated rows take.
+func (g *grid) pageRoom() (page, titles float64) {
+	return 0.85 * printableHeight / g.scale(), g.span(g.titles()) // readers differ in the scale and in the height of rows
+}
+
+// pageStart is the row after the last page break.
+func (g *grid) pageStart() int {
+	if n := len(g.breaks); n > 0 {
+		return g.breaks[n-1] + 1
+	}
+	return 1
+}
+
+// together starts a page before what was laid out from a row on, unless it fits on one
+// page with all that stands above it since the last break: where a longer part ends on
+// its last page, readers differ.
+func (g *grid) together(start int) {
+	page, titles := g.pageRoom()
+	if g.span(g.pageStart(), max(g.last(), g.drawnTo())) > page-titles {
+		g.breaks = append(g.breaks, start-1)
+	}
 }
 
 // span is the height of some rows in points.

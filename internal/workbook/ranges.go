@@ -42,10 +42,14 @@ func (l *layout) ranges() *grid {
 	l.banner(g, frameRows+1)
 	l.rangeBlock(g)
 	l.rangeCharts(g)
+	start := g.below()
 	l.moverBlock(g)
 	l.breakEvenBlock(g)
+	g.together(start)
 	l.volumeBlocks(g)
+	start = g.below()
 	l.frontBlock(g)
+	g.together(start)
 	l.whatIfBlocks(g)
 	return g
 }
@@ -230,7 +234,9 @@ const mostWhatIf = 12
 func (l *layout) whatIfBlocks(g *grid) {
 	for _, lot := range l.lots {
 		if w := lot.WhatIf; w != nil && len(w.Target) > 0 && len(w.StartWater) > 0 {
+			start := g.below()
 			l.whatIfBlock(g, lot, w)
+			g.together(start)
 		}
 	}
 }

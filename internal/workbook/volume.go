@@ -116,9 +116,10 @@ func (l *layout) volumeBlocks(g *grid) {
 			months = fixed(paidNo, row)
 		}
 		v := &volumeModel{lot: lot, list: list}
-		g.breaks = append(g.breaks, g.below()-1)
+		start := g.below()
 		l.paidBlock(g, v, months)
 		l.volumeBlock(g, v, months)
+		g.together(start)
 		if lot.no == mostLotsDrawn {
 			break
 		}
