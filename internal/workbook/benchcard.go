@@ -40,7 +40,7 @@ const (
 )
 
 func (l *layout) benchCard() *grid {
-	widths := []float64{17.5, 34, 8, 10, 9.5, 9, 8, 12, 14, 10, 10, 10}
+	widths := []float64{18, 34, 7.5, 10, 9.5, 9, 8, 12, 14, 10, 10, 10}
 	for range cardFigures * mostOnCard {
 		widths = append(widths, 14)
 	}
