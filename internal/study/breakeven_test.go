@@ -3,6 +3,8 @@ package study
 import (
 	"context"
 	"encoding/json"
+	"fmt"
+	"maps"
 	"math"
 	"os"
 	"runtime"
@@ -55,59 +57,101 @@ func (q *question) at(t *testing.T, b *BreakEven, x float64) *search.Tuner {
 		return q.priced(x/b.Now, "technician")
 	case SievePrice:
 		return q.priced(x/b.Now, q.sieves()...)
+	case SieveUses:
+		cat := *q.k.Catalog
+		cat.Agents = maps.Clone(cat.Agents)
+		for _, key := range q.sieves() {
+			a := *cat.Agents[key]
+			lives := *a.Lives
+			lives.SI, a.Lives = x, &lives
+			cat.Agents[key] = &a
+		}
+		k := q.k.With(q.k.Lot)
+		k.Catalog = &cat
+		return q.tuner(k, q.book)
 	}
 	t.Fatalf("no figure %s", b.Key)
 	return nil
 }
 
-// Where the order of two routes changes their costs differ by less than 0.01 %, and
-// on either side the one is cheaper that is said to be. The routes are tuned anew,
-// without what the search knew.
+// Where the order of two routes changes their costs differ by less than 0.01 %, and on
+// either side the one is cheaper that is said to be; where one of the two ceases to be
+// possible the order changes too. Where it never changes the same route is the cheapest
+// over the whole range. The routes are tuned anew, without what the search knew.
 func TestOrderChangesAtTheBreakEven(t *testing.T) {
-	checked := 0
+	kinds := map[string]int{}
 	for _, name := range workedJobs {
-		r, c := worked(t, name)
-		full := *r
-		full.Book = r.prices
-		q, err := newQuestion(context.Background(), &full, &r.Lots[0], c)
-		if err != nil {
-			t.Fatal(err)
-		}
-		q.warm = nil
-		for i := range r.Lots[0].BreakEvens {
-			b := &r.Lots[0].BreakEvens[i]
-			if b.Never || b.Step || b.Key == SieveUses {
-				continue
+		for _, draws := range []int{0, 400} {
+			r, c := workedWith(t, name, Options{Draws: draws, Seed: 1})
+			full := *r
+			full.Book = r.prices
+			q, err := newQuestion(context.Background(), &full, &r.Lots[0], c)
+			if err != nil {
+				t.Fatal(err)
 			}
-			checked++
-			cost := func(x float64, id string) float64 {
-				if b.Key == Receiver { // the receivers change places, over one route
-					cost, err := q.withReceiver(q.cheapestTrap(), b.Below, b.Above)(x, id)
-					if err != nil {
-						t.Fatal(err)
-					}
-					return cost
-				}
-				f := q.field(q.at(t, b, x), func(r routes.Route) bool { return r.ID() == id })
-				won, _, err := f.Cheapest(nil, math.Inf(1))
-				if err != nil || won.Route == nil {
-					t.Fatalf("%s, %s: %s at %g: %v", name, b.Key, id, x, err)
-				}
-				return won.Cost
-			}
-			if below, above := cost(b.At, b.Below), cost(b.At, b.Above); math.Abs(below-above) > 1e-4*above {
-				t.Errorf("%s, %s at %.8g: %s costs %.8g, %s %.8g", name, b.Key, b.At, b.Below, below, b.Above, above)
-			}
-			for _, side := range []float64{0.99, 1.01} {
-				below, above := cost(b.At*side, b.Below), cost(b.At*side, b.Above)
-				if (below < above) != (side < 1) {
-					t.Errorf("%s, %s at %.8g: %s costs %.8g, %s %.8g: the order does not flip", name, b.Key, b.At*side, b.Below, below, b.Above, above)
+			q.warm = nil
+			for i := range r.Lots[0].BreakEvens {
+				b := &r.Lots[0].BreakEvens[i]
+				what := fmt.Sprintf("%s, %d draws, %s", name, draws, b.Key)
+				switch {
+				case !b.Never:
+					kinds["flip"]++
+					q.checkFlip(t, what, b)
+				case b.Key != Receiver && b.Key != StartWater && b.Key != Volume:
+					kinds["never"]++
+					q.checkNever(t, what, b)
 				}
 			}
 		}
 	}
-	if checked < 3 {
-		t.Errorf("%d break-evens in the worked jobs: too few to tell", checked)
+	if kinds["flip"] < 6 || kinds["never"] < 2 {
+		t.Errorf("%v: too few to tell", kinds)
+	}
+}
+
+// costAt is the cost a litre of a route with a figure of the job at x; +Inf where it
+// cannot be had.
+func (q *question) costAt(t *testing.T, b *BreakEven, x float64, id string) float64 {
+	t.Helper()
+	if b.Key == Receiver { // the receivers change places, over one route
+		cost, err := q.withReceiver(q.cheapestTrap(), b.Below, b.Above)(x, id)
+		if err != nil {
+			t.Fatal(err)
+		}
+		return cost
+	}
+	won, _, err := q.field(q.at(t, b, x), func(r routes.Route) bool { return r.ID() == id }).Cheapest(nil, math.Inf(1))
+	if err != nil {
+		t.Fatal(err)
+	}
+	return won.Cost
+}
+
+func (q *question) checkFlip(t *testing.T, what string, b *BreakEven) {
+	t.Helper()
+	if below, above := q.costAt(t, b, b.At, b.Below), q.costAt(t, b, b.At, b.Above); !b.Step && !(math.Abs(below-above) <= 1e-4*above) {
+		t.Errorf("%s at %.8g: %s costs %.8g, %s %.8g", what, b.At, b.Below, below, b.Above, above)
+	}
+	for _, side := range []float64{0.99, 1.01} {
+		below, above := q.costAt(t, b, b.At*side, b.Below), q.costAt(t, b, b.At*side, b.Above)
+		if (below < above) != (side < 1) {
+			t.Errorf("%s at %.8g: %s costs %.8g, %s %.8g: the order does not flip", what, b.At*side, b.Below, below, b.Above, above)
+		}
+	}
+}
+
+func (q *question) checkNever(t *testing.T, what string, b *BreakEven) {
+	t.Helper()
+	const steps = 4
+	for i := range steps + 1 {
+		x := b.From * math.Pow(b.To/b.From, float64(i)/steps)
+		won, _, err := q.field(q.at(t, b, x), nil).Cheapest(nil, math.Inf(1))
+		if err != nil {
+			t.Fatal(err)
+		}
+		if cost := q.costAt(t, b, x, b.Below); cost > won.Cost*(1+1e-4) {
+			t.Errorf("%s at %.5g: %s costs %.6g, %s %.6g", what, x, b.Below, cost, won.ID(), won.Cost)
+		}
 	}
 }
 
