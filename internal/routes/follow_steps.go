@@ -21,7 +21,7 @@ func (f *follower) constants(run *Run, i int, stage Stage) Constants {
 	case steps.Forerun:
 		return f.forerunConstants(o, run.Settings.at(run.Route, i))
 	case steps.Salt:
-		return f.saltConstants(stage.Agent, o)
+		return atLeast(leastShare(run.Route), f.saltConstants(stage.Agent, o))
 	case steps.Soak:
 		choice := run.Settings.at(run.Route, i)
 		if choice.charges > 1 {
@@ -35,11 +35,19 @@ func (f *follower) constants(run *Run, i int, stage Stage) Constants {
 	case steps.Column:
 		return f.columnConstants(stage.Agent, o)
 	case steps.Reactive:
-		return f.reactiveConstants(stage.Agent, o)
+		return atLeast(leastShare(run.Route), f.reactiveConstants(stage.Agent, o))
 	case steps.Buy:
 		return Constants{"grade kg/kg": f.dryGrade(), "attended s": f.practice("buy-attended"), "lot given up": truth(f.Lot.Reclaimed)}
 	}
 	return nil
+}
+
+// atLeast enters the share of the water that a step has to take.
+func atLeast(share float64, k Constants) Constants {
+	if k != nil {
+		k["takes share"] = share
+	}
+	return k
 }
 
 func truth(b bool) float64 {

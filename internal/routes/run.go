@@ -37,6 +37,9 @@ func (c *Case) RunTo(r Route, s Settings, last float64) (Run, error) {
 		if err == nil {
 			err = nothingKept(o)
 		}
+		if err == nil {
+			err = idle(o, leastShare(r))
+		}
 		if err != nil {
 			return Run{}, fmt.Errorf("%s: %w", stage.Kind, refused(err))
 		}
@@ -55,6 +58,27 @@ func (c *Case) RunTo(r Route, s Settings, last float64) (Run, error) {
 	run.Settings.HandOverMgPerKg = c.keptHandOver(r, s, handOver)
 	c.finish(&run, lot)
 	return run, nil
+}
+
+// idleShare is the share of the water that a salt or a reactive agent in a chain takes at
+// least; what takes less is left out of it.
+const idleShare = 0.01
+
+// leastShare is that of a route: a step by itself is shown whatever it takes.
+func leastShare(r Route) float64 {
+	if len(r) == 1 {
+		return 0
+	}
+	return idleShare
+}
+
+// idle refuses a salt or a reactive agent that takes less than a share of the water.
+func idle(o steps.Outcome, share float64) error {
+	in, out := o.In.Water(), o.Out.Water()
+	if (o.Kind == steps.Salt || o.Kind == steps.Reactive) && out > in*(1-share)*(1+1e-9) {
+		return fmt.Errorf("%w: %s takes next to nothing of %s", steps.ErrNoSense, o.Agent, quantity.FormatWater(in))
+	}
+	return nil
 }
 
 // step carries out one stage.

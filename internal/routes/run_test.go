@@ -53,6 +53,23 @@ func TestASieveThatDoesNothingIsRefused(t *testing.T) {
 	}
 }
 
+// A salt that takes nothing has no place in a chain; by itself it is shown for what it
+// does. Sodium sulfate leaves methanol of 2 % as it is: its decahydrate is stable from a
+// water activity of about 0.8 on only (from memory).
+func TestAnIdleSaltIsLeftOutOfAChain(t *testing.T) {
+	k := caseOf(t, "methanol", "2 %", "500 mg/kg", "")
+	salt, soak := routes.Stage{Kind: steps.Salt, Agent: "sodium-sulfate"}, routes.Stage{Kind: steps.Soak, Agent: "sieve-3a"}
+	alone := routes.Route{salt}
+	run, err := k.Run(alone, settingsOf(alone))
+	if err != nil || run.WaterOut != run.Outcomes[0].In.Water() {
+		t.Errorf("alone: %g left, %v", run.WaterOut, err)
+	}
+	chain := routes.Route{salt, soak}
+	if _, err := k.Run(chain, settingsOf(chain)); !errors.Is(err, routes.ErrRefused) {
+		t.Errorf("in a chain: %v, want a refusal", err)
+	}
+}
+
 // Nobody attends a route for longer than it takes, and what is used is finite
 // and not negative, for every route of several lots.
 func TestRunsMakeSense(t *testing.T) {

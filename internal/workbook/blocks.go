@@ -89,11 +89,11 @@ func saltBlock() *liveBlock {
 	return newLiveBlock("salt", "Salts", common(map[string]string{
 		"Sout": "{S}-{held}", "Wout": "{Sout}*{ratio}", "hours": "({time}+{att})*{lot.vessels}" + toHours, "attended": "{att}*{lot.vessels}" + toHours,
 		"agent": "{m}", "used": "{m}", "loss1": "{held}" + toLitres, "waste1": "{m}+{taken}+{held}*(1+{ratio})", "pieces": "{lot.vessels}",
-		"follows": "{lot.vesselok}*(({last}=0)+({lot.target}>={claimable})>0)",
+		"follows": "{lot.vesselok}*(({last}=0)+({lot.target}>={claimable})>0)*({out}<={w}*(1-{takes})*(1+job_tie))",
 	}), columnsOf(chain, []liveColumn{
 		constant("usual", "Usual dose", "kg/m3"), constant("most", "Largest dose", "kg/m3"), constant("leaves", "Share left of the dissolved water", "1"),
 		constant("least", "Least outlet claimed", "kg/kg"), constant("hold", "Held by the cake", "m3/kg"), constant("time", "Stirred", "s"), constant("att", "Attended", "s"),
-		constant("claimable", "Last step from a target of", "mg/kg"),
+		constant("claimable", "Last step from a target of", "mg/kg"), constant("takes", "Takes at least", "1"),
 		constant("v1", "First pair leaves", "kg/kg"), constant("h1", "First pair holds", "kg/kg"), constant("v2", "Second pair leaves", "kg/kg"), constant("h2", "Second pair holds", "kg/kg"),
 		constant("v3", "Third pair leaves", "kg/kg"), constant("h3", "Third pair holds", "kg/kg"),
 		{"vol", "Volume", "m3", "{S}/{lot.ds}+{W}/{lot.dw}"}, {"diss", "Dissolved", "kg/kg", "MIN({w},{lot.sat})"},
@@ -361,10 +361,10 @@ func reactiveBlock() *liveBlock {
 		"Sout": "{S}-{bound}-{heel}-{vap}", "Wout": "{Sout}*{out}/(1-{out})", "hours": "({hot}+{lot.charges}*{setup})" + toHours + "+{spent}",
 		"attended": "({hot}*{share}+{lot.charges}*{setup})" + toHours, "energy": "{lot.heater}*{hot}" + toKWh, "cooling": "{flow}*({reflux}*{lot.charges}+{dist})",
 		"agent": "{charged}", "used": "{charged}", "loss1": "{heel}" + toLitres, "loss2": "{vap}" + toLitres, "loss3": "{bound}" + toLitres,
-		"waste1": "{heel}+{bound}+{charged}+{W}-{Wout}", "besides": "{spent}", "follows": "{lot.stillok}*({w}<={handles}*(1+job_tie))*({bound}<={S}-{bound})",
+		"waste1": "{heel}+{bound}+{charged}+{W}-{Wout}", "besides": "{spent}", "follows": "{lot.stillok}*({w}<={handles}*(1+job_tie))*({bound}<={S}-{bound})*({out}<={w}*(1-{takes})*(1+job_tie))",
 	}), columnsOf(chain, stillColumns, []liveColumn{
 		constant("need", "Agent needed", "kg/kg"), constant("surplus", "Surplus", "1"), constant("least", "Charged at least", "kg/m3"), constant("binds", "Surplus binds", "kg/kg"), constant("res", "Leaves", "kg/kg"),
-		constant("handles", "Feed at most", "kg/kg"), constant("heels", "Heel", "1"), constant("reflux", "Reflux", "s"), constant("setup", "Set-up", "s"), constant("spent", "Spent agent", "h"),
+		constant("handles", "Feed at most", "kg/kg"), constant("takes", "Takes at least", "1"), constant("heels", "Heel", "1"), constant("reflux", "Reflux", "s"), constant("setup", "Set-up", "s"), constant("spent", "Spent agent", "h"),
 		constant("ww", "To warm water", "J/mol"), constant("ws", "To warm solvent", "J/mol"), constant("latent", "Latent heat", "J/mol"),
 		{"vol", "Volume", "m3", "{S}/{lot.ds}+{W}/{lot.dw}"}, {"charged", "Agent charged", "kg", "MAX({surplus}*{W}*{need},{least}*{vol})"}, {"bound", "Solvent bound", "kg", "({charged}-{W}*{need})*{binds}"},
 		{"heel", "Heel", "kg", "{heels}*({S}-{bound})"}, {"dist", "Distilling, all charges", "s", "({S}-{bound}-{heel})/{lot.ms}*{latent}/{lot.net}"},

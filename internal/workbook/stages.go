@@ -201,7 +201,7 @@ var sieveNames = map[string]string{"hold": "hold-up m3/kg", "fade": "fade", "ove
 // constantNames leads from the keys of the columns to the program's names.
 var constantNames = map[steps.Kind]map[string]string{
 	steps.Settle: {"xo": "x organic", "xa": "x aqueous", "sat": "saturated kg/kg", "share": "interface share", "time": "time s", "att": "attended s"},
-	steps.Salt: {"usual": "usual kg/m3", "most": "largest kg/m3", "leaves": "left share", "least": "least kg/kg", "hold": "hold-up m3/kg", "time": "time s", "att": "attended s",
+	steps.Salt: {"takes": "takes share", "usual": "usual kg/m3", "most": "largest kg/m3", "leaves": "left share", "least": "least kg/kg", "hold": "hold-up m3/kg", "time": "time s", "att": "attended s",
 		"v1": "pair 1 leaves", "h1": "pair 1 holds", "v2": "pair 2 leaves", "h2": "pair 2 holds", "v3": "pair 3 leaves", "h3": "pair 3 holds"},
 	steps.Trap: {"xo": "x organic", "xa": "x aqueous", "vaq": "aqueous m3/mol", "vw": "water m3/mol", "vs": "solvent m3/mol", "fill": "fill m3", "usable": "usable m3", "xtwo": "x two layers",
 		"driest": "driest kg/kg", "shortest": "shortest s", "setup": "set-up s", "shut": "shut-down s", "draining": "draining s"},
@@ -210,7 +210,7 @@ var constantNames = map[steps.Kind]map[string]string{
 	steps.Column: {"recycle": "recycle", "pumpw": "pump W", "setup": "set-up s", "share": "attended share", "hasnarrow": "narrower", "haswide": "wider",
 		"area": "area m2", "rho": "bed kg/m3", "htu": "transfer m", "long": "longest m", "flow": "flow m3/s",
 		"arean": "narrower area m2", "rhon": "narrower bed kg/m3", "htun": "narrower transfer m", "longn": "narrower longest m", "flown": "narrower flow m3/s"},
-	steps.Reactive: {"need": "need kg/kg", "surplus": "surplus", "least": "least kg/m3", "binds": "bound kg/kg", "res": "residual kg/kg", "handles": "handles kg/kg", "heels": "heel share",
+	steps.Reactive: {"takes": "takes share", "need": "need kg/kg", "surplus": "surplus", "least": "least kg/m3", "binds": "bound kg/kg", "res": "residual kg/kg", "handles": "handles kg/kg", "heels": "heel share",
 		"reflux": "reflux s", "setup": "set-up s", "spent": "spent h", "ww": "warm water J/mol", "ws": "warm solvent J/mol", "latent": "latent J/mol"},
 	steps.Buy: {"grade": "grade kg/kg", "att": "attended s", "givenup": "lot given up"},
 }
