@@ -91,8 +91,8 @@ func (l *layout) placeRow(g *grid, row, place int, what string, lot *lotModel) {
 	g.put(decideRoute, row, cell{look: words, formula: fmt.Sprintf(`IF($L%d=0,"none",INDEX(%s,$L%d))`, row, compared(2), row), value: id})
 	l.pickRow(g, row, r, []pick{
 		{decideCost, compared, compareLitre, l.money("L"), moneyFormat, func(r *routeModel) float64 { return r.perLitre }},
-		{decideLow, ranged, rangeLitre, l.money("L"), moneyFormat, func(r *routeModel) float64 { return tidy(r.bands()[1].Low) }},
-		{decideHigh, ranged, rangeLitre + 2, l.money("L"), moneyFormat, func(r *routeModel) float64 { return tidy(r.bands()[1].High) }},
+		{decideLow, ranged, rangeLitre, l.money("L"), twoFigures, func(r *routeModel) float64 { return tidy(r.bands()[1].Low) }},
+		{decideHigh, ranged, rangeLitre + 2, l.money("L"), twoFigures, func(r *routeModel) float64 { return tidy(r.bands()[1].High) }},
 		{decideAttended, compared, compareAttended, "h", decimals(2), func(r *routeModel) float64 { return tidy(r.Run.HoursAttended) }},
 		{decideWater, compared, compareWater, "mg/kg", decimals(2), func(r *routeModel) float64 { return r.waterOut }},
 		{decideChance, ranged, rangeChance, "%", "0", func(r *routeModel) float64 { return tidy(r.chance()) }},

@@ -63,6 +63,16 @@ func numberShown(t *testing.T, v float64, format string) string {
 		format == "General" {
 		return strconv.FormatFloat(cutTo(v, 3), 'G', -1, 64)
 	}
+	if format == twoFigures {
+		switch {
+		case v >= 9.95:
+			format = "#,##0"
+		case v >= 0.995:
+			format = "0.0"
+		default:
+			format = "0.000"
+		}
+	}
 	if mantissa, _, ok := strings.Cut(format, "E+"); ok {
 		_, digits, _ := strings.Cut(mantissa, ".")
 		return fmt.Sprintf("%.*E", len(digits), v)

@@ -31,6 +31,10 @@ func formatFor(values ...float64) string {
 	return "#,##0." + strings.Repeat("0", decimals)
 }
 
+// twoFigures shows what is rounded to two significant figures without noughts that
+// promise more.
+const twoFigures = "[>=9.95]#,##0;[>=0.995]0.0;0.00#"
+
 func allWhole(values []float64) bool {
 	for _, v := range values {
 		if v != math.Trunc(v) {

@@ -119,7 +119,7 @@ func (l *layout) rangeRow(g *grid, i int, r *routeModel) {
 	row := l.rangeRows.at(i)
 	g.putRow(row, text(words, r.lot.Job.Name), text(words, r.ID), drawn(r.chance(), "%", "0"),
 		text(program, r.sure(l.report.Job.Assurance)))
-	units, formats := [3]string{"mg/kg", l.money("L"), "h"}, [3]string{decimals(2), moneyFormat, decimals(2)}
+	units, formats := [3]string{"mg/kg", l.money("L"), "h"}, [3]string{twoFigures, twoFigures, twoFigures}
 	for k, b := range r.bands() {
 		for j, v := range []float64{b.Low, b.Median, b.High} {
 			g.put(rangeWater+3*k+j, row, drawn(v, units[k], formats[k]))
