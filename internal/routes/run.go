@@ -37,9 +37,6 @@ func (c *Case) RunTo(r Route, s Settings, last float64) (Run, error) {
 		if err == nil {
 			err = nothingKept(o)
 		}
-		if err == nil {
-			err = idle(o, leastShare(r))
-		}
 		if err != nil {
 			return Run{}, fmt.Errorf("%s: %w", stage.Kind, refused(err))
 		}
@@ -72,11 +69,15 @@ func leastShare(r Route) float64 {
 	return idleShare
 }
 
-// idle refuses a salt or a reactive agent that takes less than a share of the water.
-func idle(o steps.Outcome, share float64) error {
-	in, out := o.In.Water(), o.Out.Water()
-	if (o.Kind == steps.Salt || o.Kind == steps.Reactive) && out > in*(1-share)*(1+1e-9) {
-		return fmt.Errorf("%w: %s takes next to nothing of %s", steps.ErrNoSense, o.Agent, quantity.FormatWater(in))
+// Idle refuses a run as a plan in which a salt or a reactive agent of a chain takes next
+// to nothing. That a draw may come to that is no reason against the plan.
+func Idle(run *Run) error {
+	for i := range run.Outcomes {
+		o := &run.Outcomes[i]
+		in, out := o.In.Water(), o.Out.Water()
+		if (o.Kind == steps.Salt || o.Kind == steps.Reactive) && out > in*(1-leastShare(run.Route))*(1+1e-9) {
+			return refusal{fmt.Errorf("%s: %s takes next to nothing of %s", o.Kind, o.Agent, quantity.FormatWater(in))}
+		}
 	}
 	return nil
 }

@@ -59,13 +59,18 @@ func TestASieveThatDoesNothingIsRefused(t *testing.T) {
 func TestAnIdleSaltIsLeftOutOfAChain(t *testing.T) {
 	k := caseOf(t, "methanol", "2 %", "500 mg/kg", "")
 	salt, soak := routes.Stage{Kind: steps.Salt, Agent: "sodium-sulfate"}, routes.Stage{Kind: steps.Soak, Agent: "sieve-3a"}
-	alone := routes.Route{salt}
+	alone, chain := routes.Route{salt}, routes.Route{salt, soak}
 	run, err := k.Run(alone, settingsOf(alone))
+	if err == nil {
+		err = routes.Idle(&run)
+	}
 	if err != nil || run.WaterOut != run.Outcomes[0].In.Water() {
 		t.Errorf("alone: %g left, %v", run.WaterOut, err)
 	}
-	chain := routes.Route{salt, soak}
-	if _, err := k.Run(chain, settingsOf(chain)); !errors.Is(err, routes.ErrRefused) {
+	if run, err = k.Run(chain, settingsOf(chain)); err != nil {
+		t.Fatal(err)
+	}
+	if err := routes.Idle(&run); !errors.Is(err, routes.ErrRefused) {
 		t.Errorf("in a chain: %v, want a refusal", err)
 	}
 }

@@ -203,7 +203,10 @@ func (b *Bounds) step(k *routes.Case, s routes.Stage) (tolls []toll, out steps.L
 	least, before := b.toll(&last), last
 	if s.Kind == steps.Salt { // before another step it is given the usual dose
 		alone := routes.Route{s, {Kind: steps.Buy}}
-		if before, err = k.Run(alone, b.tuner.blank(alone)); err != nil {
+		if before, err = k.Run(alone, b.tuner.blank(alone)); err == nil {
+			err = routes.Idle(&before)
+		}
+		if err != nil {
 			return nil, out, false, err
 		}
 		least = least.least(b.toll(&before))

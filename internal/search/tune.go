@@ -41,7 +41,7 @@ type Tuner struct {
 	Stop         func() error // why no more runs are to be made; nil: never
 }
 
-// Run carries out a route and arranges its uses as the site pays for them.
+// Run carries out a route as a plan and arranges its uses as the site pays for them.
 func (t *Tuner) Run(r routes.Route, s routes.Settings) (routes.Run, error) {
 	if t.Stop != nil {
 		if err := t.Stop(); err != nil {
@@ -49,6 +49,9 @@ func (t *Tuner) Run(r routes.Route, s routes.Settings) (routes.Run, error) {
 		}
 	}
 	run, err := t.Case.Run(r, s)
+	if err == nil {
+		err = routes.Idle(&run)
+	}
 	if err == nil && t.Site != nil {
 		t.Site.Apply(&run, t.Case.Lot.BatchesPerYear)
 	}
