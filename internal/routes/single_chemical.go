@@ -111,7 +111,6 @@ func (c *Case) singleReactive(a Asked, s *Single) (err error) {
 		s.Bands = append(s.Bands, fmt.Sprintf("what was measured for the pair, %s to %s", quantity.FormatWater(found.Low), quantity.FormatWater(found.High)))
 	} else {
 		s.Bands = append(s.Bands, fmt.Sprintf("what agents of the class leave, a factor of %.3g either way", agent.ClassBand))
-		s.Low = max(s.Low, min(agent.LowestOutlet, c.Feed.Water())) // moist air is no part of the band
 	}
 	return nil
 }
