@@ -19,42 +19,24 @@ const (
 // along is a lot and the rows that hold the water along its routes.
 type along struct {
 	list          []*routeModel
+	head          int // row of the headings
 	routes        rows
 	target, limit int
 }
 
-// alongBlock shows the water after each step of the first routes that differ in
-// their steps, as the charts draw it.
-func (l *layout) alongBlock(g *grid) {
-	l.along = map[int]along{}
+// alongBlock shows the water after each step of the first routes of a lot that differ in
+// their steps, as its chart draws it.
+func (l *layout) alongBlock(g *grid, row int, lot *lotModel) {
 	most := 0
-	for _, lot := range l.lots {
-		for _, r := range lot.unlike(mostAlong) {
-			most = max(most, len(r.Run.Outcomes))
-		}
-	}
-	if most == 0 {
-		return
-	}
-	if page, _ := g.pageRoom(); g.span(1, g.last()) > page/2 {
-		g.breaks = append(g.breaks, g.next()-1) // pages of charts are counted from here
+	for _, r := range lot.unlike(mostAlong) {
+		most = max(most, len(r.Run.Outcomes))
 	}
 	columns := []column{{name: "Lot"}, {name: "Route id"}, {"First step no", "1"}, {"Start", "mg/kg"}}
 	for i := range most {
 		columns = append(columns, column{fmt.Sprintf("After step %d", i+1), "mg/kg"})
 	}
-	row := g.table(g.next(), fmt.Sprintf("Water along the first routes that differ in their steps, as drawn: at least %g mg/kg", lowestPlotted), columns)
-	l.alongHead = row - 1
-	for _, lot := range l.lots {
-		if len(lot.routes) > 0 {
-			row = l.alongRows(g, row, lot, most) + 2
-		}
-	}
-}
-
-// alongRows writes the rows of a lot and returns the last.
-func (l *layout) alongRows(g *grid, row int, lot *lotModel, most int) int {
-	a := along{list: lot.unlike(mostAlong)}
+	row = g.table(row, fmt.Sprintf("Lot %d: water along the first routes that differ in their steps, as drawn: at least %g mg/kg", lot.no, lowestPlotted), columns)
+	a := along{list: lot.unlike(mostAlong), head: row - 1}
 	a.routes = rows{row, row + len(a.list) - 1}
 	format := l.waterFormat()
 	drawn := func(place string, v float64) cell {
@@ -83,7 +65,6 @@ func (l *layout) alongRows(g *grid, row int, lot *lotModel, most int) int {
 	row += 2
 	a.limit = level("accept at or below", "accept_limit", lot.acceptAt)
 	l.along[lot.no] = a
-	return row
 }
 
 // firstStep is the place of the first step of a route among all steps.
@@ -111,7 +92,7 @@ func (l *layout) alongChart(lot *lotModel) *excelize.Chart {
 	across := func(row, points int) string {
 		return on(sheetCompare, fixed(alongStart, row)+":"+fixed(alongStart+points, row))
 	}
-	heads := across(l.alongHead, most)
+	heads := across(a.head, most)
 	for k, r := range a.list {
 		row := a.routes.at(k)
 		c.Series = append(c.Series, drawnLine(k, on(sheetCompare, fixed(2, row)), heads, across(row, len(r.Run.Outcomes))))

@@ -18,7 +18,6 @@ const (
 
 // rangeCharts draws the range of the cost per litre of the first routes of each lot.
 func (l *layout) rangeCharts(g *grid) {
-	second := false // to be drawn on the page of the one before
 	for _, lot := range l.lots[:min(len(l.lots), mostLotsDrawn)] {
 		var drawn []*routeModel
 		for _, r := range lot.routes {
@@ -27,14 +26,8 @@ func (l *layout) rangeCharts(g *grid) {
 			}
 		}
 		if len(drawn) > 0 {
-			start, breaks := g.below(), len(g.breaks)
+			g.part(g.below())
 			l.rangeChart(g, lot, drawn)
-			if second { // two fit on a page that holds nothing else
-				second = false
-				continue
-			}
-			g.together(start)
-			second = len(g.breaks) > breaks
 		}
 	}
 }

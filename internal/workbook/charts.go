@@ -2,7 +2,6 @@ package workbook
 
 import (
 	"fmt"
-	"slices"
 
 	"github.com/xuri/excelize/v2"
 
@@ -75,23 +74,30 @@ func firstOf(lot *lotModel) string {
 }
 
 // compareCharts draws, for each lot, cost by head and beside it the water along
-// the routes, below the table.
+// the routes, and lays out what the latter draws below them.
 func (l *layout) compareCharts(g *grid) {
-	for _, lot := range l.lots[:min(len(l.lots), mostLotsDrawn)] {
+	l.along = map[int]along{}
+	for i, lot := range l.lots {
 		if len(lot.routes) == 0 {
+			continue
+		}
+		row := g.below()
+		g.part(row)
+		if i >= mostLotsDrawn {
+			l.alongBlock(g, row, lot)
 			continue
 		}
 		drawn := min(len(lot.routes), mostDrawn)
 		places := rows{lot.routes[0].no - 1, lot.routes[drawn-1].no - 1}
-		height := max(380, 130+barPitch(lot.routes[:drawn])*drawn)
-		row := g.roomForChart(float64(height) * pixelPoints)
+		height := max(320, 130+barPitch(lot.routes[:drawn])*drawn)
 		if cost := l.costChart(lot, places); len(cost.Series) > 0 { // nothing has a price in some currencies
 			g.draw(1, row, costWidth, height, fmt.Sprintf("Lot %d: cost", lot.no), cost)
 		}
+		l.alongBlock(g, g.under(placed{row: row, height: height})+3, lot)
 		g.draw(waterColumn, row, waterWidth, height, fmt.Sprintf("Lot %d: water", lot.no), l.alongChart(lot))
 	}
 	if left := len(l.lots) - mostLotsDrawn; left > 0 {
-		g.put(1, max(g.last(), g.drawnTo())+2, text(plain, fmt.Sprintf("Charts are drawn for the first %d lots; %d lots more stand in the tables only.", mostLotsDrawn, left)))
+		g.put(1, g.below(), text(plain, fmt.Sprintf("Charts are drawn for the first %d lots; %d lots more stand in the tables only.", mostLotsDrawn, left)))
 	}
 }
 
@@ -115,40 +121,9 @@ func (g *grid) draw(column, row, width, height int, name string, c *excelize.Cha
 	g.charts = append(g.charts, placed{column, row, height, c})
 }
 
-// roomForChart is the next free row. A page break goes before it where a chart of
-// that height would be cut by the end of the printed page, and before the first chart
-// where the table above it is long: that ends where the reader's heights of rows have it.
-func (g *grid) roomForChart(points float64) int {
-	row := max(g.last(), g.drawnTo()) + 2
-	page, titles := g.pageRoom()
-	first := len(g.charts) == 0 && g.span(g.pageStart(), row) > page-titles-points
-	if used := g.pageUsed(row, page, titles); first || used+points > page && points < page-titles {
-		g.breaks = append(g.breaks, row-1) // the frame of the chart needs a little room above
-	}
-	return row
-}
-
 // pageRoom is how much a printed page holds and how much of it the repeated rows take.
 func (g *grid) pageRoom() (page, titles float64) {
 	return 0.85 * printableHeight / g.scale(), g.span(g.titles()) // readers differ in the scale and in the height of rows
-}
-
-// pageStart is the row after the last page break.
-func (g *grid) pageStart() int {
-	if n := len(g.breaks); n > 0 {
-		return g.breaks[n-1] + 1
-	}
-	return 1
-}
-
-// together starts a page before what was laid out from a row on, unless it fits on one
-// page with all that stands above it since the last break: where a longer part ends on
-// its last page, readers differ.
-func (g *grid) together(start int) {
-	page, titles := g.pageRoom()
-	if g.span(g.pageStart(), max(g.last(), g.drawnTo())) > page-titles {
-		g.breaks = append(g.breaks, start-1)
-	}
 }
 
 // span is the height of some rows in points.
@@ -161,19 +136,6 @@ func (g *grid) span(first, last int) (points float64) {
 		}
 	}
 	return points
-}
-
-// pageUsed is how much of its page is used above a row.
-func (g *grid) pageUsed(row int, page, titles float64) float64 {
-	used := 0.0
-	for r := 1; r < row; r++ {
-		h := g.span(r, r)
-		if used+h > page || slices.Contains(g.breaks, r) {
-			used = titles
-		}
-		used += h
-	}
-	return used
 }
 
 func (l *layout) costChart(lot *lotModel, places rows) *excelize.Chart {

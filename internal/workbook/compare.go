@@ -17,12 +17,13 @@ const (
 )
 
 func (l *layout) compare() *grid {
+	lot, route := l.keyWidths(42) // the chart of costs ends left of the chart of water
 	g := newGrid(sheetCompare, "One row per route. Water, hours, amounts, costs and ranks follow the inputs and the prices; State says where the program has to be run again. Money in "+l.currency()+".",
-		tabResult, checkCell(), 17, 25, 9.5, 11, 10.5, 10.5, 9.5, 6.5, 8.5, 8.5, 7.5, 10.5, 10, 11, 9.5, 9, 14, 12)
+		tabResult, checkCell(), lot, route, 9.5, 11, 10.5, 10.5, 9.5, 6.5, 8.5, 8.5, 7.5, 10.5, 10, 11, 9.5, 9, 14, 12)
 	g.printColumns = compareState
 	l.compareBlock(g)
-	l.alongBlock(g)
 	l.compareCharts(g)
+	g.part(g.below())
 	l.excludedBlock(g)
 	l.cautionBlock(g)
 	l.noteBlock(g)

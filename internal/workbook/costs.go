@@ -65,8 +65,9 @@ var headNames = map[steps.Head]string{
 }
 
 func (l *layout) costs() *grid {
+	lot, route := l.keyWidths(0)
 	g := newGrid(sheetCosts, "The bill of each route: quantity × price = amount, for one batch. Below the lines: cost by head, cost per litre, target and rank. Amounts are exact and shown to a hundredth of a cent; the bill is rounded once, where it is written to the cent.",
-		tabWork, checkCell(), 17, 25, 7, 13, 11.8, 14, 10.5, 10.5, 11.5, 10.8, 13.2, 10.5, 10.5, 10.5, 11, 11, 11, 52)
+		tabWork, checkCell(), lot, route, 7, 13, 11.8, 14, 10.5, 10.5, 11.5, 10.8, 13.2, 10.5, 10.5, 10.5, 11, 11, 11, 52)
 	g.printColumns = rankRun
 	g.mixed, g.frozenRows, g.frozenColumns = true, frameRows, 3 // the blocks share only these columns
 	l.billBlock(g)

@@ -109,6 +109,7 @@ type grid struct {
 	flags         []flag
 	charts        []placed
 	merged        []merge
+	parts         []int // rows at which parts start that are to stay on one printed page
 	breaks        []int // rows that start a printed page
 	links         []jump
 	boldRows      rows // in which a mark can make the first columns bold

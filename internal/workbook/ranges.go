@@ -35,21 +35,21 @@ func drawn(v float64, unit, format string) cell {
 }
 
 func (l *layout) ranges() *grid {
+	lot, route := l.keyWidths(47) // questions and points stand in the column of routes
 	g := newGrid(sheetRanges, "How sure the figures are, what moves them, and where the choice turns. Values of the program; ranks and the cost against litres a month follow the prices.",
-		tabResult, checkCell(), 20, 27, 10.5, 12, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 8, 8)
+		tabResult, checkCell(), lot, route, 10.5, 12, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 8, 8)
 	g.printColumns = rangeRank
 	g.mixed, g.frozenRows, g.frozenColumns = true, frameRows, 2
 	l.banner(g, frameRows+1)
 	l.rangeBlock(g)
 	l.rangeCharts(g)
-	start := g.below()
+	g.part(g.below())
 	l.moverBlock(g)
+	g.part(g.below())
 	l.breakEvenBlock(g)
-	g.together(start)
 	l.volumeBlocks(g)
-	start = g.below()
+	g.part(g.below())
 	l.frontBlock(g)
-	g.together(start)
 	l.whatIfBlocks(g)
 	return g
 }
@@ -234,9 +234,8 @@ const mostWhatIf = 12
 func (l *layout) whatIfBlocks(g *grid) {
 	for _, lot := range l.lots {
 		if w := lot.WhatIf; w != nil && len(w.Target) > 0 && len(w.StartWater) > 0 {
-			start := g.below()
+			g.part(g.below())
 			l.whatIfBlock(g, lot, w)
-			g.together(start)
 		}
 	}
 }

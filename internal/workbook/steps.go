@@ -35,7 +35,8 @@ func (l *layout) allSteps() (out []stepModel) {
 }
 
 func (l *layout) steps() *grid {
-	widths := []float64{15, 22, 7, 6.5, 9.5, 11, 10, 10.5, 10.5, 9.5, 10, 9.5, 10, 9.5, 9.5, 27, 14, 10}
+	lot, route := l.keyWidths(0)
+	widths := []float64{lot, route, 7, 6.5, 9.5, 11, 10, 10.5, 10.5, 9.5, 10, 9.5, 10, 9.5, 9.5, 27, 14, 10}
 	g := newGrid(sheetSteps, "What each step does. The blocks of lots and steps follow the inputs by the closed forms and curves of the program; the column State says where only a new run can.",
 		tabWork, checkCell(), widths...)
 	g.mixed, g.frozenRows, g.frozenColumns = true, frameRows, 3 // the blocks share only these columns

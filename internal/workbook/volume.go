@@ -110,16 +110,15 @@ func (l *layout) volumeBlocks(g *grid) {
 		if len(list) < 2 {
 			continue
 		}
+		row := g.below()
+		g.part(row)
 		if months == "" {
-			row := g.below()
 			g.putRow(row, text(words, "Months in a year"), blank(plain), count(monthsPerYear))
 			months = fixed(paidNo, row)
 		}
 		v := &volumeModel{lot: lot, list: list}
-		start := g.below()
 		l.paidBlock(g, v, months)
 		l.volumeBlock(g, v, months)
-		g.together(start)
 		if lot.no == mostLotsDrawn {
 			break
 		}

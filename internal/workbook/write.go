@@ -122,6 +122,9 @@ func lay(m *model) *layout {
 	add(l.checks, l.sources)
 	l.workPages()
 	l.grids = append([]*grid{l.readMe()}, l.grids...)
+	for _, g := range l.grids {
+		g.paginate()
+	}
 	return l
 }
 
@@ -156,10 +159,9 @@ type layout struct {
 	rankRows      rows // target and rank
 	compareRows   rows
 	along         map[int]along // by lot
-	alongHead     int
-	waterShown    string // format of the water that the routes leave
-	pricesShown   string // format of prices
-	rangeRows     rows   // ranges
+	waterShown    string        // format of the water that the routes leave
+	pricesShown   string        // format of prices
+	rangeRows     rows          // ranges
 }
 
 // rows is a run of rows; it is empty where last < first.
