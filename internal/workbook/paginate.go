@@ -25,8 +25,9 @@ func (g *grid) paginate() {
 			end = starts[i+1] - 2 // a row between parts is blank
 		}
 		height := g.span(start, end)
-		fits := used+rowPoints+height <= page && (sure || !g.drawnOn(start, end))
-		runsOn := height > page-titles-rowPoints && used < mostUsed*page
+		charts := g.chartsWithin(start, end)
+		fits := used+rowPoints+height <= page && (sure || charts == 0)
+		runsOn := height > page-titles-rowPoints && used < mostUsed*page && used+rowPoints+charts <= page
 		switch {
 		case i == 0:
 		case fits || runsOn:
@@ -41,12 +42,13 @@ func (g *grid) paginate() {
 	}
 }
 
-// drawnOn reports whether a chart stands on some rows.
-func (g *grid) drawnOn(first, last int) bool {
+// chartsWithin is how far below a row the charts that stand on some rows reach, in
+// points; 0 where there is none.
+func (g *grid) chartsWithin(first, last int) (points float64) {
 	for _, p := range g.charts {
 		if p.row >= first && p.row <= last {
-			return true
+			points = max(points, g.span(first, g.under(p)))
 		}
 	}
-	return false
+	return points
 }
