@@ -9,7 +9,6 @@ import (
 
 	"parch/catalog"
 	"parch/internal/mixture"
-	"parch/internal/quantity"
 	"parch/internal/steps"
 	"parch/internal/thermo"
 )
@@ -187,7 +186,6 @@ func (c *Case) boilWithCarrier(key string, lot steps.Lot, goal float64, choice c
 	plan.Goal, plan.PreFilled = goal, receiver.PreFilled
 	rig := c.carrierRig(receiver.Returns, receiver.FillVolume.SI, receiver.Volume.SI, lot, plan.DoseKg/c.carrierDensity(key))
 	o, err := steps.RunCarrierTrap(eq, lot, plan, rig, rules)
-	c.warnOfHotPot(&o, atTheSite)
 	o.Apparatus = receiver.Key
 	return o, err
 }
@@ -210,7 +208,6 @@ func (c *Case) stripCarrier(key string, lot steps.Lot, choice choice) (steps.Out
 	if err != nil {
 		return o, err
 	}
-	c.warnOfHotPot(&o, atTheSite)
 	if column := c.columnOf(choice.stages); column != nil {
 		o.Apparatus = column.Key
 	}
@@ -221,23 +218,4 @@ func (c *Case) stripCarrier(key string, lot steps.Lot, choice choice) (steps.Out
 		return o, refusal{fmt.Errorf("stripping %s over %d stages would take %.0f %% of the lot with it", key, choice.stages, 100*lost)}
 	}
 	return o, nil
-}
-
-// Where a carrier may be boiled out: routes keep to the site's pressure.
-const (
-	atTheSite = "in a comparison a carrier boils out at the site's pressure only"
-	asAsked   = "so may a carrier at a lower --pressure"
-)
-
-// warnOfHotPot says where a pot is hotter than its solvent should be, and what of
-// the pressure.
-func (c *Case) warnOfHotPot(o *steps.Outcome, ofPressure string) {
-	limit, hottestK := c.Solvent.HottestPot, 0.0
-	for _, p := range o.Course {
-		hottestK = math.Max(hottestK, p.PotK)
-	}
-	if limit != nil && hottestK > limit.SI {
-		o.Warnings = append(o.Warnings, fmt.Sprintf("the pot reaches %s, above the %s that %s should not pass (%s); a forerun under reduced pressure stays below it; %s",
-			quantity.FormatTemperature(hottestK), limit.Text, c.Solvent.Name, limit.Note, ofPressure))
-	}
 }

@@ -96,7 +96,6 @@ func (c *Case) singleCarrier(a Asked, s *Single) error {
 		return wasteful{lost, fmt.Errorf("boiling out with %s and stripping it over %d stages would take %.0f %% of the lot with it", a.Carrier, a.Stages, 100*lost)}
 	}
 	s.Apparatus = receiver.Key
-	c.warnOfHotPot(&s.Outcome, asAsked)
 	c.bandOfLayers(s, eq, plan, rigFor(plan.DoseKg), rules)
 	return nil
 }

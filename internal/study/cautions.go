@@ -1,15 +1,19 @@
 package study
 
 import (
+	"fmt"
+	"math"
 	"slices"
 
 	"parch/catalog"
+	"parch/internal/quantity"
 	"parch/internal/routes"
+	"parch/internal/steps"
 )
 
-// cautions that apply to a route on a lot, in the catalog's order.
-func cautions(k *routes.Case, r routes.Route) []catalog.Caution {
-	var out []catalog.Caution
+// cautions that apply to a route on a lot and to how it ran, in the catalog's order.
+func cautions(k *routes.Case, r routes.Route, outcomes ...steps.Outcome) []catalog.Caution {
+	out := hotPot(k.Solvent, outcomes)
 	for _, c := range k.Catalog.Cautions {
 		if applies(c, k, r) {
 			out = append(out, ownCaution(c))
@@ -27,6 +31,25 @@ func cautions(k *routes.Case, r routes.Route) []catalog.Caution {
 		}
 	}
 	return out
+}
+
+// hotPot speaks of a pot that became hotter than its solvent should, as it does where a
+// carrier is stripped off a high boiler: the solvent then boils by itself.
+func hotPot(s *catalog.Solvent, outcomes []steps.Outcome) []catalog.Caution {
+	hottestK := 0.0
+	for _, o := range outcomes {
+		for _, p := range o.Course {
+			hottestK = math.Max(hottestK, p.PotK)
+		}
+	}
+	if s.HottestPot == nil || hottestK <= s.HottestPot.SI {
+		return nil
+	}
+	return []catalog.Caution{ownCaution(catalog.Caution{
+		Code: "hot-pot", Level: "danger", Origin: s.HottestPot.Origin,
+		Text: fmt.Sprintf("The pot reaches %s, above the %s that %s should not pass (%s). A forerun under reduced pressure stays below it; so may a carrier there (parch step trap, --pressure).",
+			quantity.FormatTemperature(hottestK), s.HottestPot.Text, s.Name, s.HottestPot.Note),
+	})}
 }
 
 // verdictWords leads over from a pair to the reason.
