@@ -72,8 +72,11 @@ func (l *layout) costs() *grid {
 	g.mixed, g.frozenRows, g.frozenColumns = true, frameRows, 3 // the blocks share only these columns
 	l.billBlock(g)
 	l.headBlock(g)
+	g.part(g.below())
 	l.writtenBlock(g)
+	g.part(g.below())
 	l.litreBlock(g)
+	g.part(g.below())
 	l.rankBlock(g)
 	g.link(1, frameRows+1, "Cost by head", on(sheetCosts, at(1, l.headRows.first-2)))
 	g.link(2, frameRows+1, "Cost per litre and per year", on(sheetCosts, at(1, l.litreRows.first-2)))

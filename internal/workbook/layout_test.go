@@ -5,39 +5,41 @@ import (
 	"testing"
 )
 
-// Pages that hold what those of the usual readers hold at least cut no chart and start with
-// one blank row before a part.
+// A page that holds the least that the usual readers put on one ends where a break is,
+// and within no chart: what holds more breaks at the same rows.
 func TestPagesCutNothing(t *testing.T) {
 	for _, k := range everyKind(t) {
 		for _, g := range k.layout.grids {
-			page, titles := g.pageRoom()
+			if g.percent > 0 || g.onePage {
+				continue
+			}
+			ends := g.pageEnds()
 			for _, p := range g.charts {
-				if g.percent == 0 && cutByAPage(g, p.row, g.under(p), page, titles) {
-					t.Errorf("%s: a chart in row %d of %s is cut; pages start at %v", k.name, p.row, g.name, g.breaks)
+				if slices.ContainsFunc(ends, func(row int) bool { return row > p.row && row <= g.under(p) }) {
+					t.Errorf("%s: a chart in row %d of %s is cut; pages start at %v", k.name, p.row, g.name, ends)
 				}
 			}
-			for _, row := range g.breaks {
-				if len(g.rows[row]) == 0 && !slices.ContainsFunc(g.charts, func(p placed) bool { return p.row == row+1 }) {
-					t.Errorf("%s: a page of %s starts with two blank rows, %d and the next", k.name, g.name, row)
-				}
+			if len(g.parts) > 0 && !slices.Equal(ends, g.breaks) {
+				t.Errorf("%s: pages of %s start at %v, breaks are at %v", k.name, g.name, ends, g.breaks)
 			}
 		}
 	}
 }
 
-// cutByAPage tells whether a page ends within some rows.
-func cutByAPage(g *grid, first, last int, page, titles float64) bool {
-	used := 0.0
-	for row := 1; row <= last; row++ {
+// pageEnds are the rows that start a page where breaks are or a page is full.
+func (g *grid) pageEnds() (starts []int) {
+	page, titles := g.pageRoom()
+	used, first := 0.0, 1
+	if len(g.printed) > 0 {
+		used, first = titles, g.printed[0].first
+	}
+	for row := first; row <= max(g.last(), g.drawnTo()); row++ {
 		if slices.Contains(g.breaks, row) || used+g.span(row, row) > page {
-			used = titles
-			if row > first {
-				return true
-			}
+			starts, used = append(starts, row), titles
 		}
 		used += g.span(row, row)
 	}
-	return false
+	return starts
 }
 
 // A row that holds nothing but a lot, a route and figures is one line high where their
@@ -58,6 +60,21 @@ func TestRowsOfRoutesAreOneLineHigh(t *testing.T) {
 					t.Errorf("%s: row %d of %s (%s, %s) is %g points high", k.name, row, g.name, r.lot.Job.Name, r.ID, g.height(row))
 				}
 			}
+		}
+	}
+}
+
+// Costs prints its blocks below the lines of the bill one after the other: each printed
+// area starts a page, and four routes leave it empty.
+func TestCostsArePrintedTogether(t *testing.T) {
+	m, err := newModel(jobReport(t, "acetonitrile"))
+	if err != nil {
+		t.Fatal(err)
+	}
+	l := lay(m)
+	for _, g := range l.grids {
+		if g.name == sheetCosts && (len(g.printed) != 1 || g.printed[0].first != l.headRows.first-2 || g.printed[0].last != l.rankRows.last || len(g.breaks) > 0) {
+			t.Errorf("printed %v in pages from %v", g.printed, g.breaks)
 		}
 	}
 }

@@ -7,39 +7,50 @@ func (g *grid) part(row int) { g.parts = append(g.parts, row) }
 // the next one.
 const mostUsed = 0.6
 
-// paginate sets the page breaks of a sheet. A part stays on the page of the one before
-// if it fits there, else it starts a page. A part that is longer than a page runs on:
-// where it ends is known only roughly, since readers differ in what a page holds, and a
-// part with a chart does not follow it on its page.
+// paginate sets the page breaks of a sheet with parts. A part stays on the page of the one
+// before if it fits there, else it starts a page. A part that is longer than a page runs
+// on, and is broken where the least that a page holds is full: readers differ in what it
+// holds, and would differ in what follows.
 func (g *grid) paginate() {
+	if len(g.parts) == 0 {
+		return
+	}
 	page, titles := g.pageRoom()
 	used, first := 0.0, 1
 	if len(g.printed) > 0 {
 		used, first = titles, g.printed[0].first
 	}
 	starts := append([]int{first}, g.parts...)
-	sure := true
 	for i, start := range starts {
 		end := max(g.last(), g.drawnTo())
 		if i+1 < len(starts) {
 			end = starts[i+1] - 2 // a row between parts is blank
 		}
-		height := g.span(start, end)
-		charts := g.chartsWithin(start, end)
-		fits := used+rowPoints+height <= page && (sure || charts == 0)
-		runsOn := height > page-titles-rowPoints && used < mostUsed*page && used+rowPoints+charts <= page
-		switch {
-		case i == 0:
-		case fits || runsOn:
+		if i > 0 {
+			fits := used+rowPoints+g.span(start, end) <= page
+			long := titles+rowPoints+g.span(start, end) > page
+			runsOn := long && used < mostUsed*page && used+rowPoints+g.chartsWithin(start, end) <= page
+			if !fits && !runsOn {
+				g.breaks = append(g.breaks, start-1) // the blank row leads the page
+				used = titles
+			}
 			used += rowPoints
-		default:
-			g.breaks = append(g.breaks, start-1) // the blank row leads the page
-			used, sure = titles+rowPoints, true
 		}
-		for used += height; used > page; used -= page - titles {
-			sure = false
-		}
+		used = g.runOn(start, end, used, page, titles)
 	}
+}
+
+// runOn fills pages with rows and returns what is used of the last.
+func (g *grid) runOn(first, last int, used, page, titles float64) float64 {
+	for row := first; row <= last; row++ {
+		height := g.span(row, row)
+		if used+height > page {
+			g.breaks = append(g.breaks, row)
+			used = titles
+		}
+		used += height
+	}
+	return used
 }
 
 // chartsWithin is how far below a row the charts that stand on some rows reach, in

@@ -6,21 +6,15 @@ const curvesPrinted = 40
 // workPages are the rows that the working sheets print: the blocks with a row for
 // each step or route, not what they are computed from.
 func (l *layout) workPages() {
-	withHeading := func(r rows) rows { return rows{r.first - 2, r.last} } // its name and its columns
+	withHeading := func(first, last rows) []rows { return []rows{{first.first - 2, last.last}} } // its name and its columns
 	for _, g := range l.grids {
-		var blocks []rows
-		switch g.name {
-		case sheetCurves:
+		switch {
+		case g.name == sheetCurves:
 			g.printed = []rows{{1, min(g.last(), curvesPrinted)}}
-		case sheetSteps:
-			blocks = []rows{l.flowRows}
-		case sheetCosts:
-			blocks = []rows{l.headRows, l.rankRows}
-		}
-		for _, r := range blocks {
-			if !r.empty() {
-				g.printed = append(g.printed, withHeading(r))
-			}
+		case g.name == sheetSteps && !l.flowRows.empty():
+			g.printed = withHeading(l.flowRows, l.flowRows)
+		case g.name == sheetCosts && !l.headRows.empty():
+			g.printed = withHeading(l.headRows, l.rankRows) // one area: each starts a page
 		}
 	}
 }

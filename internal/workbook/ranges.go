@@ -228,8 +228,10 @@ func (l *layout) askedOf() string {
 	return said
 }
 
-// mostWhatIf columns of targets fit on the sheet.
-const mostWhatIf = 12
+const (
+	whatIfStart = 2  // column of the start water
+	mostWhatIf  = 12 // columns of targets fit on the sheet
+)
 
 func (l *layout) whatIfBlocks(g *grid) {
 	for _, lot := range l.lots {
@@ -241,32 +243,44 @@ func (l *layout) whatIfBlocks(g *grid) {
 }
 
 // whatIfBlock shows the cheapest route over start water and target: the routes,
-// then their costs.
+// then their costs. Where there is room for it, each target has two columns: ids are long.
 func (l *layout) whatIfBlock(g *grid, lot *lotModel, w *study.WhatIf) {
 	targets := w.Target[:min(len(w.Target), mostWhatIf)]
-	block := func(name string, put func(row, column int, c study.WhatIfCell)) {
-		columns := []column{{name: "Lot"}, {"Start water", "mg/kg"}}
-		for _, t := range targets {
-			columns = append(columns, column{fmt.Sprintf("to %s", significant(t*mgPerKg)), "mg/kg"})
+	wide := 1
+	if 2*len(targets) <= g.printColumns-whatIfStart {
+		wide = 2
+	}
+	last := func(j int) int { return whatIfStart + (j+1)*wide } // column of a target
+	block := func(name string, put func(row, first, last int, c study.WhatIfCell)) {
+		row := g.table(g.below(), name, []column{{name: "Lot"}, {"Start water", "mg/kg"}})
+		for j, t := range targets {
+			g.put(last(j)-wide+1, row-1, blank(heading))
+			h := text(heading, column{fmt.Sprintf("to %s", significant(t*mgPerKg)), "mg/kg"}.heading())
+			h.right = true
+			g.put(last(j), row-1, h)
 		}
-		row := g.table(g.below(), name, columns)
 		format := formatFor(each(w.StartWater, func(x float64) float64 { return tidy(x * mgPerKg) })...)
 		for i, start := range w.StartWater {
 			g.putRow(row, text(words, lot.Job.Name), number(start*mgPerKg, "mg/kg").shown(format))
 			for j := range targets {
-				put(row, 3+j, w.Cells[i][j])
+				put(row, last(j)-wide+1, last(j), w.Cells[i][j])
 			}
 			row++
 		}
 	}
-	block(fmt.Sprintf("Lot %d, what if: the cheapest route for other starts and targets, %s", lot.no, lot.AskedOf()), func(row, column int, c study.WhatIfCell) {
-		s := c.ID
-		if s == "" {
-			s = c.Note
+	block(fmt.Sprintf("Lot %d, what if: the cheapest route for other starts and targets, %s", lot.no, lot.AskedOf()), func(row, first, last int, c study.WhatIfCell) {
+		g.put(last, row, blank(program))
+		if first < last {
+			g.merged = append(g.merged, merge{row, first, last})
 		}
-		g.put(column, row, text(program, s))
+		s := c.Note
+		if c.ID != "" {
+			s, _ = folded(c.ID, g.roomFor(first, row), paints[program].size, false)
+		}
+		g.put(first, row, text(program, s))
 	})
-	block(fmt.Sprintf("Lot %d, what if: its cost per litre, %s", lot.no, l.money("L")), func(row, column int, c study.WhatIfCell) {
-		g.put(column, row, seen(c.CostPerLitre, l.money("L"), moneyFormat))
+	block(fmt.Sprintf("Lot %d, what if: its cost per litre, %s", lot.no, l.money("L")), func(row, first, last int, c study.WhatIfCell) {
+		g.put(first, row, blank(program))
+		g.put(last, row, seen(c.CostPerLitre, l.money("L"), moneyFormat))
 	})
 }

@@ -43,7 +43,7 @@ var conventionWords = []string{
 	"Water contents are mg of water per kg of solution. Litres are at the temperature of the lot.",
 	"Route ids join the steps with a plus; an agent follows a colon: trap+soak:sieve-3a.",
 	"In charts each route has its own marker and dash as well as its colour; target and limit are lines without markers.",
-	"Decision prints on one page, Bench card on one for each lot. Curves prints its beginning only, Steps the steps of the routes, Costs the costs by head and the ranks; to print all of a sheet, clear its print area. The sheets are protected against slips, without a password.",
+	"Decision prints on one page, Bench card on one for each lot. Curves prints its beginning only, Steps the steps of the routes, Costs what stands below the lines of the bill; to print all of a sheet, clear its print area. The sheets are protected against slips, without a password.",
 }
 
 // lookWords explains the appearance of cells.

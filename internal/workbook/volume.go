@@ -159,13 +159,30 @@ const (
 	volumeFirst   = 5
 )
 
+// headings over the costs of the routes are their ids, or where one would be broken
+// within a word, the numbers that stand beside the ids above.
+func (v *volumeModel) headings(g *grid) (names []string) {
+	whole := true
+	for k, r := range v.list {
+		room := (g.widths[volumeFirst+k-1]*pointsForText - besideText) * headingSpared
+		name, fits := folded(r.ID, room, paints[heading].size, true)
+		names, whole = append(names, name), whole && fits
+	}
+	for k, r := range v.list {
+		if !whole {
+			names[k] = fmt.Sprintf("Route no %d", r.no)
+		}
+	}
+	return names
+}
+
 // volumeBlock is the cost per litre of the routes at other volumes, at the present
 // one, and where routes are level with the first; where they never are within the
 // volumes drawn, the present one stands in.
 func (l *layout) volumeBlock(g *grid, v *volumeModel, months string) {
 	columns := []column{{name: "Lot"}, {name: "Point"}, {"Batches a year", "1/yr"}, {"Litres a month", "L"}}
-	for _, r := range v.list {
-		columns = append(columns, column{r.ID, "1"})
+	for _, name := range v.headings(g) {
+		columns = append(columns, column{name, "1"})
 	}
 	first := g.table(g.below(), fmt.Sprintf("Lot %d: cost per litre against litres a month, %s", v.lot.no, l.money("L")), columns)
 	v.nodes = rows{first, first + len(volumeShares) - 1}
@@ -229,7 +246,7 @@ func (l *layout) volumeChart(g *grid, v *volumeModel, now int) {
 	perMonth := v.lot.batches * v.lot.batchLitres / monthsPerYear
 	bound(&c.XAxis, perMonth*volumeShares[0], perMonth*volumeShares[len(volumeShares)-1])
 	for k := range v.list {
-		c.Series = append(c.Series, drawnLine(k, on(sheetRanges, fixed(volumeFirst+k, v.nodes.first-1)),
+		c.Series = append(c.Series, drawnLine(k, on(sheetRanges, fixed(2, v.paid.at(k))),
 			on(sheetRanges, v.nodes.column(volumeLitres)), on(sheetRanges, v.nodes.column(volumeFirst+k))))
 	}
 	point := func(name string, first, last int, symbol string) {
