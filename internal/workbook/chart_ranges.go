@@ -51,7 +51,8 @@ func (l *layout) rangeChart(g *grid, lot *lotModel, drawn []*routeModel) {
 	c.XAxis.ReverseOrder = true
 	c.YAxis.MajorGridLines = true
 	c.YAxis.NumFmt = excelize.ChartNumFmt{CustomNumFmt: "#,##0.##"}
-	c.YAxis.Title = axisTitle(unit + " delivered in spec")
+	c.YAxis.Title = axisTitle(unit + " delivered in spec: 5 % to median dark, median to 95 % light")
+	c.Legend.Position = "none" // it would name the bar that is not seen
 	zero := 0.0
 	c.YAxis.Minimum = &zero
 	for i, fill := range []excelize.Fill{solid(unseen), solid("0072B2"), solid("9CC9E6")} {
@@ -59,6 +60,19 @@ func (l *layout) rangeChart(g *grid, lot *lotModel, drawn []*routeModel) {
 		c.Series = append(c.Series, excelize.ChartSeries{Name: on(sheetRanges, fixed(column, first-1)),
 			Categories: on(sheetRanges, area(2, first, last)), Values: on(sheetRanges, area(column, first, last)), Fill: fill})
 	}
-	height := max(240, 130+30*len(drawn))
+	height := max(180, 110+rangePitch(drawn)*len(drawn))
 	g.draw(rangeChartColumn, first-1, rangeChartWidth, height, fmt.Sprintf("Lot %d: cost range", lot.no), c)
 }
+
+// rangePitch is the height of a bar with its gap, in pixels, so that two charts of ten bars
+// fit on a page: names that break at a hyphen take two lines beside it.
+func rangePitch(drawn []*routeModel) int {
+	for _, r := range drawn {
+		if len(r.ID) > shortID {
+			return 30
+		}
+	}
+	return 24
+}
+
+const shortID = 20 // characters that a line beside the bars holds

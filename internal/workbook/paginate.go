@@ -5,7 +5,7 @@ func (g *grid) part(row int) { g.parts = append(g.parts, row) }
 
 // mostUsed is the share of a page above which a part that is longer than a page starts
 // the next one.
-const mostUsed = 0.6
+const mostUsed = 0.7
 
 // paginate sets the page breaks of a sheet with parts. A part stays on the page of the one
 // before if it fits there, else it starts a page. A part that is longer than a page runs
