@@ -49,7 +49,8 @@ func (l *layout) benchCard() *grid {
 	g.mixed, g.frozenRows, g.portrait, g.printColumns = true, frameRows, true, cardField
 	for _, lot := range l.lots {
 		if len(lot.routes) > 0 {
-			l.card(g, lot, l.pointsThatFit(g, lot))
+			points, pixels := l.pointsThatFit(g, lot)
+			l.card(g, lot, points, pixels)
 		}
 	}
 	if len(g.printed) == 0 {
@@ -66,15 +67,27 @@ const (
 	leastExpected = 8
 )
 
-func (l *layout) pointsThatFit(g *grid, lot *lotModel) int {
-	for points := mostExpected; points > leastExpected; points-- {
-		trial := &grid{widths: g.widths, printColumns: g.printColumns, heights: map[int]float64{}}
-		l.card(trial, lot, points)
-		if trial.legible(trial.printed[0]) {
-			return points
+// expectHeights are those of the rows of what to expect and of the chart beside them, in
+// pixels: as high as the page has room for without smaller letters, for a hand to write in.
+var expectHeights = []int{30, 27, 24, 21}
+
+func (l *layout) pointsThatFit(g *grid, lot *lotModel) (points, pixels int) {
+	trial := func(points, pixels int) (*grid, rows) {
+		g := &grid{widths: g.widths, printColumns: g.printColumns, heights: map[int]float64{}}
+		l.card(g, lot, points, pixels)
+		return g, g.printed[0]
+	}
+	for _, pixels := range expectHeights {
+		if card, r := trial(mostExpected, pixels); card.pageScale(r) >= card.pageScale(rows{}) {
+			return mostExpected, pixels
 		}
 	}
-	return leastExpected
+	for points := mostExpected; points > leastExpected; points-- {
+		if card, r := trial(points, cardRowHeight); card.legible(r) {
+			return points, cardRowHeight
+		}
+	}
+	return leastExpected, cardRowHeight
 }
 
 // onCard are the routes that a card can be chosen for: the first of each chain of
@@ -143,7 +156,7 @@ func (c *cardModel) heads(row, figure int, x column) {
 
 const dash = "–"
 
-func (l *layout) card(g *grid, lot *lotModel, points int) {
+func (l *layout) card(g *grid, lot *lotModel, points, pixels int) {
 	c := &cardModel{g: g, lot: lot, list: lot.onCard()}
 	for k, r := range c.list {
 		c.words = append(c.words, l.cardWords(r, points))
@@ -158,7 +171,7 @@ func (l *layout) card(g *grid, lot *lotModel, points int) {
 	c.texts("Set points", "", func(w cardWords) []string { return w.settings })
 	c.texts("When to stop", "", func(w cardWords) []string { return w.until })
 	beside := c.expectRows()
-	l.cardChart(c, first+4, beside, points)
+	l.cardChart(c, first+4, beside, points, pixels)
 	l.testRowsOf(c)
 	g.fixedTexts("Storage, label", l.labelWords(lot))
 	c.texts("Waste, a batch", "weighed", func(w cardWords) []string { return w.waste })

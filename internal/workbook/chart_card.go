@@ -55,14 +55,17 @@ func between(course []steps.Point, share float64) (hours, water float64) {
 
 const (
 	cardChartWidth = 238 // pixels, within the column of text
-	cardRowHeight  = 19  // of the rows of what to expect beside it
+	cardRowHeight  = 19  // of the rows of what to expect beside it, at least
 )
 
 // cardChart draws water against time for the chosen route, beside its figures.
 // Its points stand to the right of the card, from the row data.
-func (l *layout) cardChart(c *cardModel, data, row, points int) {
-	height := cardRowHeight * points
+func (l *layout) cardChart(c *cardModel, data, row, points, pixels int) {
+	height := pixels * points
 	g := c.g
+	for r := row; r <= g.last(); r++ {
+		g.heights[r] = max(g.height(r), float64(pixels)*pixelPoints)
+	}
 	lack := float64(height+8)*pixelPoints - g.span(row, g.last())
 	if lack > 0 {
 		g.heights[g.last()] = g.height(g.last()) + lack
@@ -87,7 +90,7 @@ func (l *layout) cardChart(c *cardModel, data, row, points int) {
 	for i := range cardPoints {
 		c.chartRow(data+1+i, i, courses)
 	}
-	ch := baseChart(excelize.Scatter, "mg/kg against hours, logarithmic axis")
+	ch := baseChart(excelize.Scatter, "mg/kg against h, logarithmic")
 	ch.Title.Paragraph[0].Font.Size = 9
 	sheet := sheetBenchCard
 	ch.Format.AltText = fmt.Sprintf("Line on a logarithmic axis: water against time in a step of the route chosen on the card of lot %d, with the acceptance limit. The numbers stand right of the card, rows %d to %d.", c.lot.no, data+1, data+cardPoints)
