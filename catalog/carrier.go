@@ -14,6 +14,7 @@ type Carrier struct {
 
 	NotWith       []string // classes of solvent that it reacts with
 	NotWithReason string
+	NotWithOrigin Origin
 	Origin
 }
 

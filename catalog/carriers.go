@@ -21,11 +21,12 @@ func (s *shelf) readCarriers() {
 			c := &Carrier{Key: e.Key, Reason: f.Need("reason").Text(), Origin: s.origin(f)}
 			c.ByName = f.Need("accept").OneOf("always", "by name") == "by name"
 			if n := f.Get("not with"); n != nil {
-				g := n.Map("classes", "reason")
+				g := n.Map(with("classes", "reason")...)
 				for _, class := range g.Need("classes").Items() {
 					c.NotWith = append(c.NotWith, class.Text())
 				}
 				c.NotWithReason = g.Need("reason").Text()
+				c.NotWithOrigin = s.originOr(g, &c.Origin)
 			}
 			s.cat.Carriers[e.Key] = c
 		}

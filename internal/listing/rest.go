@@ -44,6 +44,8 @@ func carrier(key string, c *catalog.Carrier) Entry {
 	}
 	f.say("accepted", accepted, c.Origin)
 	f.say("reason", c.Reason, c.Origin)
+	f.say("never with", strings.Join(c.NotWith, ", "), c.NotWithOrigin)
+	f.say("reason of that", c.NotWithReason, c.NotWithOrigin)
 	return Entry{Key: key, Title: accepted, Facts: f}
 }
 

@@ -63,7 +63,7 @@ func (c *Case) refuseCarrier(key string) (reason, source string) {
 	}
 	for _, class := range carrier.NotWith {
 		if class == c.Solvent.Class {
-			return fmt.Sprintf("%s reacts with %s: %s", key, c.Solvent.Name, carrier.NotWithReason), carrier.Source
+			return fmt.Sprintf("%s reacts with %s: %s", key, c.Solvent.Name, carrier.NotWithReason), carrier.NotWithOrigin.Source
 		}
 	}
 	if h := c.Catalog.Solvents[key].Hazards; h.PeroxideClass != "none" && h.PeroxideClass != "" && !c.CarrierAccepted(key) {
