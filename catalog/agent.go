@@ -4,9 +4,10 @@ import "strings"
 
 // Agent is a drying agent named by its material.
 type Agent struct {
-	Key, Name, Kind string // Kind: "sieve", "salt", "reactive", "oxide"
-	Formula         string // of the dry agent; "" for sieves and gels
-	Own             bool   // from the user's own file
+	Key, Name, Kind string   // Kind: "sieve", "salt", "reactive", "oxide"
+	Formula         string   // of the dry agent; "" for sieves and gels
+	Aliases         []string // what else it is called
+	Own             bool     // from the user's own file
 	Isotherm        *Isotherm
 	Hydrates        []Hydrate        // of a salt, in the order in which they form
 	Claim           *Claim           // what a salt may promise

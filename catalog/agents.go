@@ -30,14 +30,14 @@ func (s *shelf) readAgents() {
 }
 
 var agentKeys = []string{
-	"name", "kind", "formula", "isotherm", "loading band", "hydrates", "claim", "reaction", "residuals", "pore space", "window", "useless above",
+	"name", "aliases", "kind", "formula", "isotherm", "loading band", "hydrates", "claim", "reaction", "residuals", "pore space", "window", "useless above",
 	"bulk density", "bead diameter", "bead density", "bead porosity", "bead tortuosity", "hold-up", "lives", "fade", "largest dose",
 	"heat of uptake", "heat capacity",
 }
 
 func (s *shelf) agent(key string, n *document.Node, f document.Fields, scaled map[*Agent]document.Fields) *Agent {
 	a := &Agent{
-		Key: key, Name: f.Need("name").Text(), Kind: f.Need("kind").OneOf(agentKinds...), Formula: f.Get("formula").Text(), Own: s.owning,
+		Key: key, Name: f.Need("name").Text(), Kind: f.Need("kind").OneOf(agentKinds...), Formula: f.Get("formula").Text(), Aliases: f.Get("aliases").Texts(), Own: s.owning,
 		UselessAbove:   s.optional(f.Get("useless above"), quantity.Temperature),
 		Window:         s.optional(f.Get("window"), quantity.Length),
 		BulkDensity:    s.optional(f.Get("bulk density"), quantity.Density),

@@ -12,7 +12,7 @@ import (
 	"parch/internal/steps"
 )
 
-// agent finds the agent by key or name and sees to it that the step works with it.
+// agent finds the agent by key, name, formula or alias and sees to it that the step works with it.
 func (r *reader) agent() {
 	r.q.Activation = noActivation()
 	typed, ok := r.flags["agent"]
@@ -43,13 +43,26 @@ func (r *reader) agent() {
 	}
 }
 
+// findAgent finds an agent by key or name, else by its formula or by what else it is
+// called, so that a user's own agent is never taken for another.
 func findAgent(c *catalog.Catalog, typed string) *catalog.Agent {
-	for _, key := range slices.Sorted(maps.Keys(c.Agents)) {
-		if a := c.Agents[key]; strings.EqualFold(a.Key, strings.TrimSpace(typed)) || strings.EqualFold(a.Name, strings.TrimSpace(typed)) {
-			return a
+	typed = bare(typed)
+	for _, words := range []func(*catalog.Agent) []string{
+		func(a *catalog.Agent) []string { return []string{a.Key, a.Name} },
+		func(a *catalog.Agent) []string { return append([]string{a.Formula}, a.Aliases...) },
+	} {
+		for _, key := range slices.Sorted(maps.Keys(c.Agents)) {
+			if slices.ContainsFunc(words(c.Agents[key]), func(word string) bool { return word != "" && bare(word) == typed }) {
+				return c.Agents[key]
+			}
 		}
 	}
 	return nil
+}
+
+// bare is a name without what people write one way or another.
+func bare(name string) string {
+	return strings.NewReplacer(" ", "", "-", "", "å", "a", "ångström", "a", "angstrom", "a").Replace(strings.ToLower(name))
 }
 
 // neverWith says why an agent must never meet the solvent, with its source, or nothing.

@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"maps"
 	"slices"
+	"strings"
 
 	"parch/catalog"
 	"parch/internal/quantity"
@@ -14,6 +15,7 @@ func agent(key string, a *catalog.Agent) Entry {
 	own := catalog.Origin{Own: a.Own}
 	f.say("kind", a.Kind, own)
 	f.say("formula", a.Formula, own)
+	f.say("also called", strings.Join(a.Aliases, ", "), own)
 	f.isotherm(a.Isotherm)
 	if a.LoadingBand > 1 {
 		f.say("band of the loading, factor", plain(a.LoadingBand), a.BandOrigin)
