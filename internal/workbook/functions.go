@@ -33,6 +33,9 @@ func (e *evaluator) call(n *node, here spot) any {
 		args[i] = e.eval(a, here)
 	}
 	if f, ok := ofOne[n.text]; ok {
+		if x, ok := e.alone(args[0]); ok {
+			return f(x)
+		}
 		return e.spread(func(x []any) any { return f(x[0]) }, args[0])
 	}
 	return e.ofMany(n.text, args)

@@ -3,7 +3,6 @@ package workbook
 import (
 	"archive/zip"
 	"bytes"
-	"compress/flate"
 	"errors"
 	"fmt"
 	"hash/crc32"
@@ -15,6 +14,8 @@ import (
 	"strconv"
 	"strings"
 	"time"
+
+	"github.com/klauspost/compress/flate"
 )
 
 const contentTypes = "[Content_Types].xml"
@@ -37,8 +38,9 @@ type parts struct {
 type maker func(name string, written []byte, to io.Writer) error
 
 // level of compression: above it the demonstration's workbook becomes smaller by a
-// twentieth and compressing takes three times as long.
-const level = 5
+// twentieth and compressing takes three times as long. The standard library's would
+// take twice as long for the same size.
+const level = 6
 
 // packed is a compressed part.
 type packed struct {

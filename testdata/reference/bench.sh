@@ -8,4 +8,5 @@ work=$(mktemp -d)
 trap 'rm -rf "$work"' EXIT
 go build -o "$work/reference" ./testdata/reference
 export TMPDIR="$work"
+export GOGC=400 # as the program sets it for itself
 /usr/bin/python3 testdata/reference/reference.py "$work/reference" "${1:-3}"
