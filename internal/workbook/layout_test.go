@@ -22,8 +22,18 @@ func TestPagesCutNothing(t *testing.T) {
 			if len(g.parts) > 0 && !slices.Equal(ends, g.breaks) {
 				t.Errorf("%s: pages of %s start at %v, breaks are at %v", k.name, g.name, ends, g.breaks)
 			}
+			for _, row := range g.breaks {
+				if named(g, row-1) || named(g, row-2) {
+					t.Errorf("%s: row %d of %s starts a page, the name of its block is on the one before", k.name, row, g.name)
+				}
+			}
 		}
 	}
+}
+
+// named reports whether a row holds the name of a block.
+func named(g *grid, row int) bool {
+	return row > 0 && row <= len(g.rows) && len(g.rows[row-1]) > 0 && g.rows[row-1][0].look == block
 }
 
 // pageEnds are the rows that start a page where breaks are or a page is full.

@@ -40,15 +40,19 @@ func (g *grid) paginate() {
 	}
 }
 
-// runOn fills pages with rows and returns what is used of the last.
+// runOn fills pages with rows and returns what is used of the last. The name of a block, its
+// headings and its first entry stay together.
 func (g *grid) runOn(first, last int, used, page, titles float64) float64 {
 	for row := first; row <= last; row++ {
-		height := g.span(row, row)
-		if used+height > page {
+		together := row
+		if row <= len(g.rows) && len(g.rows[row-1]) > 0 && g.rows[row-1][0].look == block {
+			together = min(row+2, last)
+		}
+		if used+g.span(row, together) > page && used > titles {
 			g.breaks = append(g.breaks, row)
 			used = titles
 		}
-		used += height
+		used += g.span(row, row)
 	}
 	return used
 }
