@@ -19,6 +19,10 @@ func TestPagesCutNothing(t *testing.T) {
 					t.Errorf("%s: a chart in row %d of %s is cut; pages start at %v", k.name, p.row, g.name, ends)
 				}
 			}
+			last := slices.IndexFunc(ends, func(row int) bool { return len(g.parts) > 0 && row > g.parts[len(g.parts)-1] })
+			if last >= 0 && len(g.breaks) < len(ends) {
+				ends = ends[:last] // the last part runs on without breaks
+			}
 			if len(g.parts) > 0 && !slices.Equal(ends, g.breaks) {
 				t.Errorf("%s: pages of %s start at %v, breaks are at %v", k.name, g.name, ends, g.breaks)
 			}

@@ -10,7 +10,7 @@ const mostUsed = 0.7
 // paginate sets the page breaks of a sheet with parts. A part stays on the page of the one
 // before if it fits there, else it starts a page. A part that is longer than a page runs
 // on, and is broken where the least that a page holds is full: readers differ in what it
-// holds, and would differ in what follows.
+// holds, and would differ in what follows. The last part is left to the reader.
 func (g *grid) paginate() {
 	if len(g.parts) == 0 {
 		return
@@ -35,6 +35,9 @@ func (g *grid) paginate() {
 				used = titles
 			}
 			used += rowPoints
+		}
+		if i+1 == len(starts) && g.chartsWithin(start, end) == 0 {
+			break
 		}
 		used = g.runOn(start, end, used, page, titles)
 	}
