@@ -19,13 +19,14 @@ func (s *shelf) readCautions() {
 }
 
 func (s *shelf) readCaution(n *document.Node, classes, seen map[string]bool) {
-	f := n.Map(with("code", "level", "text", "steps", "agents", "classes", "solvents", "peroxide", "flammable", "reclaimed")...)
+	f := n.Map(with("code", "level", "text", "steps", "agents", "classes", "solvents", "peroxide", "flammable", "reclaimed", "reduced pressure")...)
 	c := Caution{
 		Code: f.Need("code").Text(), Level: f.Need("level").OneOf("info", "caution", "danger"), Text: f.Need("text").Text(),
 		Steps: known(f.Get("steps"), stepKinds), Agents: keysIn(f.Get("agents"), s.cat.Agents),
 		Classes: keysIn(f.Get("classes"), classes), Solvents: keysIn(f.Get("solvents"), s.cat.Solvents),
 		Peroxide: f.Get("peroxide").Bool(), Flammable: f.Get("flammable").Bool(), Reclaimed: f.Get("reclaimed").Bool(),
-		Origin: s.origin(f),
+		ReducedPressure: f.Get("reduced pressure").Bool(),
+		Origin:          s.origin(f),
 	}
 	if seen[c.Code] {
 		f.Get("code").Fail("%q stands twice", c.Code)

@@ -149,6 +149,7 @@ type Caution struct {
 	Classes, Solvents []string // empty: any
 	Peroxide          bool     // only for peroxide formers
 	Reclaimed         bool     // only for reclaimed lots
+	ReducedPressure   bool     // only where it boils under less than a room has
 	Flammable         bool     // only for solvents with a flash point
 	Origin
 }

@@ -63,7 +63,7 @@ func cautions(c *catalog.Catalog) (list []Entry) {
 		for _, only := range []struct {
 			what string
 			on   bool
-		}{{"peroxide formers", one.Peroxide}, {"flammable solvents", one.Flammable}, {"reclaimed lots", one.Reclaimed}} {
+		}{{"peroxide formers", one.Peroxide}, {"flammable solvents", one.Flammable}, {"reclaimed lots", one.Reclaimed}, {"reduced pressure", one.ReducedPressure}} {
 			if only.on {
 				f.say("only for", only.what, one.Origin)
 			}

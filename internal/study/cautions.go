@@ -11,11 +11,21 @@ import (
 	"parch/internal/steps"
 )
 
+// leastRoomPa is the pressure of a room at about 3000 m: less is a vacuum (assumption).
+const leastRoomPa = 70e3
+
+// boilsReduced reports whether a route boils under less than any room has. Settings name
+// the pressures of foreruns in kPa, 0 where it is the site's.
+func boilsReduced(k *routes.Case, s routes.Settings) bool {
+	return k.Job.Site.PressurePa < leastRoomPa ||
+		slices.ContainsFunc(s.PressureKPa, func(kPa float64) bool { return kPa > 0 && 1e3*kPa < leastRoomPa })
+}
+
 // cautions that apply to a route on a lot and to how it ran, in the catalog's order.
-func cautions(k *routes.Case, r routes.Route, outcomes ...steps.Outcome) []catalog.Caution {
+func cautions(k *routes.Case, r routes.Route, s routes.Settings, outcomes ...steps.Outcome) []catalog.Caution {
 	out := hotPot(k.Solvent, outcomes)
 	for _, c := range k.Catalog.Cautions {
-		if applies(c, k, r) {
+		if applies(c, k, r) && (!c.ReducedPressure || boilsReduced(k, s)) {
 			out = append(out, ownCaution(c))
 		}
 	}

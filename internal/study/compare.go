@@ -203,7 +203,7 @@ func (l *Lot) carryOut(ctx context.Context, w *work, t *search.Tuner, offered []
 		if err != nil {
 			return err
 		}
-		all[i] = Route{ID: r.ID(), Label: w.k.Label(r, run.Settings), Run: run, Cautions: cautions(w.k, r, run.Outcomes...), Warnings: append(runWarnings(w.k, run), ovenWarning(w.k, run)...)}
+		all[i] = Route{ID: r.ID(), Label: w.k.Label(r, run.Settings), Run: run, Cautions: cautions(w.k, r, run.Settings, run.Outcomes...), Warnings: append(runWarnings(w.k, run), ovenWarning(w.k, run)...)}
 		if err := all[i].account(w.k, w.site, t.Book); err != nil {
 			return fmt.Errorf("%s: %w", r.ID(), err)
 		}

@@ -17,5 +17,5 @@ func Remarks(k *routes.Case, r routes.Route, outcomes ...steps.Outcome) (all []c
 	if anyStep(r, func(s routes.Stage) bool { return s.Kind.Heated() }) {
 		warnings = append(warnings, stillWarnings(k, stillCharges(k, outcomes...))...)
 	}
-	return cautions(k, r, outcomes...), warnings
+	return cautions(k, r, routes.Settings{}, outcomes...), warnings
 }
