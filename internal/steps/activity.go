@@ -28,7 +28,7 @@ func waterAtActivity(m *thermo.Mixture, activity, tK, highest float64) (float64,
 	}
 	lnW, err := thermo.Brent(func(lnW float64) float64 {
 		return math.Log(m.Activity(math.Exp(lnW), tK) / activity)
-	}, math.Log(leastWater), math.Log(highest), 1e-13)
+	}, lnLeastWater, math.Log(highest), 1e-13)
 	if err != nil {
 		return math.NaN(), err
 	}

@@ -46,7 +46,7 @@ func newQuickSorption(s *sorption) *quickSorption {
 // ln of the uptake at ln p, and its slope. Below the table Henry's law holds.
 func (q *quickSorption) lnLoadingAt(lnP float64) (lnQ, slope float64) {
 	at := (lnP - q.lnLowest) / q.lnStep
-	i := int(math.Max(0, math.Min(at, quickPoints-2)))
+	i := int(max(0, min(at, quickPoints-2)))
 	slope = (q.lnLoading[i+1] - q.lnLoading[i]) / q.lnStep
 	return q.lnLoading[i] + slope*q.lnStep*(at-float64(i)), slope
 }
@@ -85,7 +85,7 @@ func (q *quickSorption) balance(perSorbent, ratio0 float64, a *Aside, shift floa
 		return lnLoad + lnQ - math.Log(take), d + perSorbent*r/take
 	}
 	start := q.pair.Dilute(q.lnPAt(math.Log(all)-lnLoad-q.lnShare)-q.lnPsat, shift)
-	lnRatio, _ := rising(gap, math.Log(leastWater), lnHighest, start)
+	lnRatio, _ := rising(gap, lnLeastWater, lnHighest, start)
 	if lnHighest-lnRatio < 1e-6 {
 		if f, _ := gap(lnHighest); f < 0 {
 			return ratio0, false
@@ -226,6 +226,6 @@ func (q *quickSorption) floor(a *Aside, shift, highest float64) (ratio float64, 
 		return lnQ - want, d
 	}
 	start := q.pair.Dilute(q.lnPAt(want-q.lnShare)-q.lnPsat, shift)
-	lnRatio, ok := rising(above, math.Log(leastWater), math.Log(highest), start)
+	lnRatio, ok := rising(above, lnLeastWater, math.Log(highest), start)
 	return math.Exp(lnRatio), ok
 }

@@ -69,6 +69,8 @@ func (s *sorption) loading(water float64) float64 {
 
 const leastWater = 1e-20 // kg/kg, the lower end of every search
 
+var lnLeastWater = math.Log(leastWater)
+
 // floor is the solution in equilibrium with the sorbent's residual loading,
 // which no dose and no time can pass.
 func (s *sorption) floor() (float64, error) {
@@ -80,7 +82,7 @@ func (s *sorption) balanced(lnHighest float64, surplus func(w float64) float64) 
 	if surplus(leastWater) >= 0 {
 		return leastWater, nil
 	}
-	lnW, err := thermo.Brent(func(lnW float64) float64 { return surplus(math.Exp(lnW)) }, math.Log(leastWater), lnHighest, 1e-13)
+	lnW, err := thermo.Brent(func(lnW float64) float64 { return surplus(math.Exp(lnW)) }, lnLeastWater, lnHighest, 1e-13)
 	if err != nil {
 		return math.NaN(), s.wetter()
 	}
