@@ -204,8 +204,11 @@ func (a *Answer) adviseReactive() {
 		quantity.Significant(need, 3), quantity.Significant(charged, 3), quantity.Significant(charged-need, 3))
 	now, later := a.Figure("hydrogen while drying"), a.Figure("hydrogen held by the surplus, set free at disposal")
 	if now > 0 || later > 0 {
-		a.tell("hydrogen", "up to %s L (at 20 °C) come off while drying, %s L are held by the surplus and come off at its disposal: vented, never sealed",
-			quantity.Significant(now, 3), quantity.Significant(later, 3))
+		held := "none is held by the surplus"
+		if later > 0 {
+			held = quantity.FormatVolume(later/1e3) + " are held by the surplus and come off at its disposal"
+		}
+		a.tell("hydrogen", "up to %s (at 20 °C) come off while drying, %s: vented, never sealed", quantity.FormatVolume(now/1e3), held)
 	}
 	for _, d := range a.Discards {
 		a.tell("spent", "goes as %s waste, by people trained for it", d.Class)

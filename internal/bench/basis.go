@@ -118,10 +118,15 @@ func (a *Answer) restsOnSorbent() {
 		a.habit("water that a ketone makes", "sieve-ketone-water")
 	}
 	a.habit("molar volume of water", "water-molar-volume")
-	a.restsOn("bead diameter", agent.BeadDiameter)
+	if q.Powder {
+		a.habit("diameter of the powder", "powder-diameter")
+		a.habit("solvent kept on the filtered powder", "powder-hold-up")
+	} else {
+		a.restsOn("bead diameter", agent.BeadDiameter)
+		a.restsOn("solvent kept on drained beads", agent.HoldUp)
+	}
 	a.restsOn("bead porosity", agent.BeadPorosity)
 	a.restsOn("bead tortuosity", agent.BeadTortuosity)
-	a.restsOn("solvent kept on drained beads", agent.HoldUp)
 }
 
 func (a *Answer) restsOnSalt() {

@@ -4,6 +4,7 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"strings"
 
 	"parch/internal/steps"
 )
@@ -30,6 +31,11 @@ func (c *Case) singleSoak(a Asked, s *Single) (err error) {
 	}
 	if err != nil {
 		return err
+	}
+	if a.Powder {
+		for i, lost := range s.Losses {
+			s.Losses[i].Cause = strings.Replace(lost.Cause, "drained beads", "filtered powder", 1)
+		}
 	}
 	timeS := s.Course[len(s.Course)-1].Hours * 3600
 	if a.Stirred {

@@ -92,7 +92,7 @@ func NewCarrierEquilibrium(model *thermo.Ternary, organic *thermo.OrganicLayer, 
 	}
 	eq.CarrierVolatility = eq.volatility()
 	if eq.CarrierVolatility < leastVolatility {
-		return nil, fmt.Errorf("%w: %s does not leave %s: its vapour over the dry solvent is %.2g times as rich in it as the liquid",
+		return nil, fmt.Errorf("%w: %s does not leave %s: its vapour over the dry solvent is %.3g times as rich in it as the liquid",
 			ErrNoCarrier, model.Pure[thermo.InCarrier].Called(), model.Pure[thermo.InSolvent].Called(), eq.CarrierVolatility)
 	}
 	return eq, nil
