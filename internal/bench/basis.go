@@ -166,7 +166,9 @@ func (a *Answer) restsOnReaction() {
 		a.restsOn("agent charged per agent needed", &re.Surplus)
 		a.habit("least agent", "reactive-least")
 	}
-	a.habit("reflux", "reactive-reflux")
+	if !given(a.Question.TimeS) {
+		a.habit("reflux", "reactive-reflux")
+	}
 	a.habit("left in the pot", "forerun-heel")
 	a.habit("heat that reaches the liquid", "heat-share")
 	a.heater()

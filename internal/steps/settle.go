@@ -21,6 +21,9 @@ var ErrNothingSettles = errors.New("no free water to settle")
 // is kept is saturated; the layers are those of the liquid-liquid equilibrium,
 // their amounts by the lever rule.
 func RunSettle(m *thermo.Mixture, feed Lot, tempK float64, rules SettleRules) (Outcome, error) {
+	if err := checkLiquid(m.Solvent, tempK); err != nil {
+		return Outcome{}, err
+	}
 	layers, err := m.LayersAt(tempK)
 	if err != nil {
 		return Outcome{}, err

@@ -126,16 +126,16 @@ func (b *bath) figures(dose SoakDose, eq, takenKg, doseKg float64) []Figure {
 const LotsServed = "lots over one charge"
 
 func (b *bath) reason(goal, out, floor, timeS float64, dose SoakDose) (Stop, string) {
-	hours := timeS / secondsPerHour
+	hours := quantity.Significant(timeS/secondsPerHour, 3)
 	switch {
 	case math.IsNaN(goal):
-		return AtTime, fmt.Sprintf("%s after %.3g h", quantity.FormatWater(out), hours)
+		return AtTime, fmt.Sprintf("%s after %s h", quantity.FormatWater(out), hours)
 	case dose.Enough:
-		return AtTarget, fmt.Sprintf("%s in %.3g h; %s rules", quantity.FormatWater(out), hours, dose.Ruling())
+		return AtTarget, fmt.Sprintf("%s in %s h; %s rules", quantity.FormatWater(out), hours, dose.Ruling())
 	case goal <= floor:
 		return AtFloor, fmt.Sprintf("floor: a sieve that still holds %.2g g/100 g leaves %s, whatever the dose", b.sorbent.ResidualKgPerKg*100, quantity.FormatWater(floor))
 	case b.rig.CondensationPerS > 0:
-		return AtPractice, fmt.Sprintf("%s makes water on the sorbent: no dose reaches %s in %.3g h", b.m.Solvent.Called(), quantity.FormatWater(goal), hours)
+		return AtPractice, fmt.Sprintf("%s makes water on the sorbent: no dose reaches %s in %s h", b.m.Solvent.Called(), quantity.FormatWater(goal), hours)
 	}
 	eq, err := b.equilibrium(dose.Dose * b.volumeM3)
 	if err != nil || eq >= goal {
@@ -143,7 +143,7 @@ func (b *bath) reason(goal, out, floor, timeS float64, dose SoakDose) (Stop, str
 	}
 	wait := math.Ceil(math.Log((b.feed.Water()-eq)/(goal-eq)) / b.rate(dose.Dose) / secondsPerHour)
 	if b.rig.Stirred {
-		return AtTime, fmt.Sprintf("time: no dose up to %.3g g/L reaches %s in %.3g h stirred; wait %.0f h", dose.Dose, quantity.FormatWater(goal), hours, wait)
+		return AtTime, fmt.Sprintf("time: no dose up to %.3g g/L reaches %s in %s h stirred; wait %.0f h", dose.Dose, quantity.FormatWater(goal), hours, wait)
 	}
-	return AtTime, fmt.Sprintf("time: no dose reaches %s in %.3g h in a still vessel; stir, or wait %.0f h", quantity.FormatWater(goal), hours, wait)
+	return AtTime, fmt.Sprintf("time: no dose reaches %s in %s h in a still vessel; stir, or wait %.0f h", quantity.FormatWater(goal), hours, wait)
 }
