@@ -60,7 +60,7 @@ func (l *layout) rangeChart(g *grid, lot *lotModel, drawn []*routeModel) {
 		c.Series = append(c.Series, excelize.ChartSeries{Name: on(sheetRanges, fixed(column, first-1)),
 			Categories: on(sheetRanges, area(2, first, last)), Values: on(sheetRanges, area(column, first, last)), Fill: fill})
 	}
-	height := max(180, 110+rangePitch(drawn)*len(drawn))
+	height := max(180, 88+rangePitch(drawn)*len(drawn))
 	g.draw(rangeChartColumn, first-1, rangeChartWidth, height, fmt.Sprintf("Lot %d: cost range", lot.no), c)
 }
 

@@ -101,18 +101,26 @@ func (l *layout) compareCharts(g *grid) {
 	}
 }
 
-// barPitch is the height of a bar with its gap, in pixels: long names take three
-// lines beside it.
+// barPitch is the height of a bar with its gap, in pixels: long names take two lines
+// beside it, the longest three.
 func barPitch(list []*routeModel) int {
+	longest := 0
 	for _, r := range list {
-		if len(r.ID) > longID {
-			return 42
-		}
+		longest = max(longest, len(r.ID))
+	}
+	switch {
+	case longest > threeLines:
+		return 42
+	case longest > longID:
+		return 36
 	}
 	return 30
 }
 
-const longID = 26 // characters that two lines hold
+const (
+	longID     = 26 // characters that a line beside the bars holds
+	threeLines = 50
+)
 
 func (g *grid) draw(column, row, width, height int, name string, c *excelize.Chart) {
 	c.Dimension = excelize.ChartDimension{Width: uint(width), Height: uint(height)}

@@ -47,10 +47,10 @@ func (l *layout) ranges() *grid {
 	l.moverBlock(g)
 	g.part(g.below())
 	l.breakEvenBlock(g)
-	l.volumeBlocks(g)
 	g.part(g.below())
 	l.frontBlock(g)
 	l.whatIfBlocks(g)
+	l.volumeBlocks(g)
 	return g
 }
 
