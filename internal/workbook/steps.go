@@ -18,6 +18,9 @@ const (
 	stepPlace    = 18 // of the step among the live blocks, off the printed page
 )
 
+// stepLot is the most that the column of lots is wide: the reasons beside it take two lines.
+const stepLot = 20.0
+
 // stepModel is one step with its place.
 type stepModel struct {
 	route *routeModel
@@ -36,7 +39,7 @@ func (l *layout) allSteps() (out []stepModel) {
 
 func (l *layout) steps() *grid {
 	lot, route := l.keyWidths(0)
-	widths := []float64{lot, route, 7, 6.5, 9.5, 11, 10, 10.5, 10.5, 9.5, 10, 9.5, 10, 9.5, 9.5, 27, 14, 10}
+	widths := []float64{min(lot, stepLot), route, 7, 6.5, 9.5, 11, 10, 10.5, 10.5, 9.5, 10, 9.5, 10, 9.5, 9.5, 36, 14, 10}
 	g := newGrid(sheetSteps, "What each step does. The blocks of lots and steps follow the inputs by the closed forms and curves of the program; the column State says where only a new run can.",
 		tabWork, checkCell(), widths...)
 	g.mixed, g.frozenRows, g.frozenColumns = true, frameRows, 3 // the blocks share only these columns
