@@ -57,7 +57,7 @@ var headColours = map[steps.Head]string{
 
 const (
 	costWidth   = 670 // pixels
-	waterWidth  = 640
+	waterWidth  = 610
 	waterColumn = 9 // clear of the chart to its left
 )
 
@@ -131,8 +131,11 @@ func (g *grid) draw(column, row, width, height int, name string, c *excelize.Cha
 
 // pageFilled is the share of a page that is filled. Readers differ in the scale and in the
 // height of rows: where a unit of column width has 6.0 points in place of 6.1, a page holds
-// 2 % less.
-const pageFilled = 0.93
+// 2 % less. Charts end higher up: no typeface that stands in, however narrow, cuts them.
+const (
+	pageFilled  = 0.93
+	chartFilled = 0.85
+)
 
 // pageRoom is how much a printed page holds and how much of it the repeated rows take.
 func (g *grid) pageRoom() (page, titles float64) {

@@ -92,3 +92,25 @@ func TestCostsArePrintedTogether(t *testing.T) {
 		}
 	}
 }
+
+// narrowUnit is the width in points of one unit of column width in the narrowest of the
+// usual stand-ins: a digit of Liberation Sans Narrow is 0.456 of its size (from its file),
+// 6.7 pixels at 11 points, which readers round to 7.
+const narrowUnit = 5.25
+
+// No chart reaches beyond the printed columns, in whatever typeface the sheet is printed.
+func TestChartsFitInAnyTypeface(t *testing.T) {
+	for _, k := range everyKind(t) {
+		for _, g := range k.layout.grids {
+			for _, p := range g.charts {
+				room := 0.0
+				for _, w := range g.widths[p.column-1 : g.printColumns] {
+					room += w * narrowUnit
+				}
+				if width := float64(p.chart.Dimension.Width) * pixelPoints; width > room {
+					t.Errorf("%s: a chart of %s is %.0f points wide, the columns from %s on have %.0f", k.name, g.name, width, columnName(p.column), room)
+				}
+			}
+		}
+	}
+}

@@ -27,9 +27,10 @@ func (g *grid) paginate() {
 			end = starts[i+1] - 2 // a row between parts is blank
 		}
 		if i > 0 {
-			fits := used+rowPoints+g.span(start, end) <= page
+			whole := used+rowPoints+g.chartsWithin(start, end) <= page*chartFilled/pageFilled
+			fits := used+rowPoints+g.span(start, end) <= page && whole
 			long := titles+rowPoints+g.span(start, end) > page
-			runsOn := long && used < mostUsed*page && used+rowPoints+g.chartsWithin(start, end) <= page
+			runsOn := long && used < mostUsed*page && whole
 			if !fits && !runsOn {
 				g.breaks = append(g.breaks, start-1) // the blank row leads the page
 				used = titles

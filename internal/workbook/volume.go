@@ -226,7 +226,7 @@ func round2(x float64) float64 {
 const (
 	volumeHeight = 520 // pixels
 	chartBeside  = 10  // column of a chart beside its table
-	besideWidth  = 500
+	besideWidth  = 435
 )
 
 func (l *layout) volumeChart(g *grid, v *volumeModel, now int) {
