@@ -22,6 +22,7 @@ func (s *shelf) readMatrix() {
 			}
 		}
 	})
+	s.checkLikeness()
 }
 
 // enter sets a verdict. Own data may make a built-in one stricter; a dangerous
