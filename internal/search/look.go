@@ -41,12 +41,44 @@ func (g *tuning) everywhere() {
 	}
 	g.refineValleys(lowest)
 	before := g.best.score
-	if g.allAxes(g.best.spot.clone()); g.hasLate() {
-		g.descend(g.best.spot.clone(), true)
-		g.inPairs()
+	g.allAxes(g.best.spot.clone())
+	if g.hasLate() {
+		g.lateAxes()
 	}
 	if g.best.score < before {
 		g.refine(0.25 / (coarsePoints - 1))
+	}
+	if g.hasLate() {
+		g.lateAcross(grid)
+	}
+}
+
+// lateAxes goes downhill along all axes, and along the late ones in pairs.
+func (g *tuning) lateAxes() {
+	g.descend(g.best.spot.clone(), true)
+	g.inPairs()
+}
+
+// lateAcross goes downhill from the best spot's axes at all hand-overs, as often as that
+// brings more than a tie: the more lots go over a charge, the more it pays to hand over dry.
+func (g *tuning) lateAcross(grid [][]float64) {
+	for better := true; better; {
+		kept := g.best
+		g.acrossGrid(grid)
+		g.lateAxes()
+		if better = !tied(kept.score, g.best.score); better {
+			g.refine(1.0 / (coarsePoints - 1))
+		} else {
+			g.best = kept
+		}
+	}
+}
+
+// acrossGrid goes downhill from the best spot's axes at each of the hand-overs.
+func (g *tuning) acrossGrid(grid [][]float64) {
+	at := g.best.spot.clone().at
+	for _, u := range grid {
+		g.descend(spot{at, u}, true)
 	}
 }
 

@@ -8,6 +8,7 @@ import (
 	"testing"
 
 	"parch/internal/routes"
+	"parch/internal/steps"
 )
 
 // Sizes of the comparison with a dense grid. PARCH_OPTIMALITY=200 takes that many
@@ -55,6 +56,28 @@ func TestTunedAgainstADenseGrid(t *testing.T) {
 		}
 	}
 	t.Logf("%d jobs, %d points: at most %.3g %% worse than the grid, at most %.3g %% better", compared, points, 100*worst, 100*best)
+}
+
+// How dry to hand over goes with how many lots share a charge, and above what fills the
+// receiver all hand-overs are the same: two jobs in which neither alone leads to the best.
+func TestHandOverAndLotsOverAChargeGoTogether(t *testing.T) {
+	for agent, yaml := range map[string]string{
+		"sieve-4a": lotYAML("waste", "n-butyl-acetate", 3, 17, 6614.58, 207.67, ", needed within: 165 h"),
+		"sieve-3a": lotYAML("waste", "n-butyl-acetate", 2.32, 5.39, 3802.95, 296.575, ""),
+	} {
+		tuner, route := tunerOf(t, yaml), routes.Route{{Kind: steps.Trap}, {Kind: steps.Soak, Agent: agent}}
+		tuned, err := tuner.Tune(route)
+		if err != nil {
+			t.Fatal(err)
+		}
+		got, err := tuner.Value(&tuned)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if grid, _ := denseGrid(t, tuner, route, fewPoints, tuned.Settings); got > grid*(1+worse) {
+			t.Errorf("%s: tuned %.8g, grid %.8g: %.3g %% worse\n%s%+v", route.ID(), got, grid, 100*(got/grid-1), yaml, tuned.Settings)
+		}
+	}
 }
 
 // denseGrid is the lowest value over all combinations, and how much the value

@@ -218,9 +218,20 @@ func (g *tuning) try(s spot) float64 {
 		return math.Inf(1)
 	}
 	if score < g.best.score {
-		g.best = trial{run, s.clone(), score}
+		g.best = trial{run, g.handedOver(s, &run), score}
 	}
 	return score
+}
+
+// handedOver is a spot with the water that is really handed over: what fills the
+// receiver of a trap can take more than is asked for, and all hand-overs above that
+// are the same.
+func (g *tuning) handedOver(s spot, run *routes.Run) spot {
+	s = s.clone()
+	for i, place := range g.places {
+		s.u[i] = math.Min(s.u[i], math.Max(g.lo[i], math.Log(run.Outcomes[place].Out.Water()*1e6)))
+	}
+	return s
 }
 
 func (g *tuning) remember(err error) {
