@@ -242,7 +242,7 @@ func (f *follower) trapCurve(receiverC float64, waters []float64) (Curve, error)
 	all := filled(potNodes, waters, func(n int) []float64 { return steps.TrapWaters(trap, f.trapRules(), wettest, n) })
 	nodes, err := steps.TrapTable(trap, f.trapRules(), f.Job.Site.RoomK, all)
 	for _, n := range nodes {
-		curve.Rows = append(curve.Rows, []float64{n.Water, n.BoiledMol, n.HeatJ, n.LnLeft, n.YWater, n.LatentJ, n.WarmWaterJ, n.WarmSolventJ})
+		curve.Rows = append(curve.Rows, []float64{n.Water, n.BoiledMol, n.HeatJ, n.LnLeftM3, n.YWater, n.LatentJ, n.WarmWaterJ, n.WarmSolventJ})
 	}
 	return curve, err
 }

@@ -81,3 +81,25 @@ func TestDilutePotFallsExponentially(t *testing.T) {
 		near(t, "vapour", mol, want, 0.001)
 	}
 }
+
+// A receiver is full when its volume of condensate has gone over, however the vapour
+// changes on the way. Volumes are those of the pure liquids at its temperature, added up.
+func TestAFilledReceiverHoldsItsVolume(t *testing.T) {
+	for _, c := range []struct {
+		solvent string
+		water   float64
+	}{{"toluene", 500e-6}, {"toluene", 3000e-6}, {"ethyl-acetate", 20000e-6}, {"cyclohexane", 60e-6}} {
+		eq := equilibrium(t, c.solvent, 20)
+		r, rules := ideally()
+		r.FillVolumeM3 = 60e-6
+		feed := litres(eq.Mixture, 3, c.water)
+		o, err := steps.RunTrap(eq, feed, 0.999*c.water, r, rules) // dry enough when the receiver is full
+		if err != nil {
+			t.Fatal(err)
+		}
+		m := eq.Mixture
+		held := o.Balance.WaterRemovedKg/m.Water.MolarMassKgPerMol*m.MolarVolume(1, eq.ReceiverK) +
+			o.Balance.SolventRemovedKg/m.Solvent.MolarMassKgPerMol*m.MolarVolume(0, eq.ReceiverK)
+		near(t, c.solvent+": receiver", held, r.FillVolumeM3, 1e-9)
+	}
+}

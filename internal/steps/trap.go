@@ -269,38 +269,37 @@ const (
 )
 
 // fill boils the receiver full; nothing returns (Rayleigh, dN_i/dn = -y_i, by
-// the midpoint rule). The organic layer of that condensate stays in the receiver.
+// the midpoint rule over equal volumes of condensate). The organic layer of that
+// condensate stays in the receiver.
 func (b *boiling) fill() error {
 	v, err := b.vapour(b.fraction())
 	if err != nil {
 		return err
 	}
 	b.note()
-	total := b.rig.FillVolumeM3 / b.m.MolarVolume(v.YWater, b.eq.ReceiverK)
-	if total >= b.solvent {
-		return fmt.Errorf("%w: the receiver holds %.3g L and would take the whole charge", ErrNoTrap, 1e3*b.rig.FillVolumeM3)
+	totalM3 := b.rig.FillVolumeM3
+	if err := b.outlasts(totalM3); err != nil {
+		return err
 	}
-	if total > (1-leastHeel)*(b.water+b.solvent) {
-		return fmt.Errorf("%w: the receiver holds %.3g L before anything returns, which would leave less than %.0f %% of the charge in the pot", ErrNoTrap, 1e3*b.rig.FillVolumeM3, 100*leastHeel)
-	}
-	left := total
-	for n := 0; left > 0; n++ {
+	leftM3 := totalM3
+	for n := 0; leftM3 > 0; n++ {
 		if n == mostFillSteps {
 			return fmt.Errorf("%w: the filling of the receiver with %s, %d steps, %.3g of it to go, %.3g mg/kg of water in the pot", ErrUnsolved,
-				b.m.Solvent.Called(), n, left/total, b.m.MassFraction(b.fraction())*mgPerKg)
+				b.m.Solvent.Called(), n, leftM3/totalM3, b.m.MassFraction(b.fraction())*mgPerKg)
 		}
-		step := math.Min(left, fillShare*total)
+		stepM3 := math.Min(leftM3, fillShare*totalM3)
 		if v.YWater > 0 {
-			step = math.Min(step, fillWaterShare*b.water/v.YWater)
+			stepM3 = math.Min(stepM3, fillWaterShare*b.water/v.YWater*b.condensateM3(v))
 		}
-		if left-step < 1e-9*total {
-			step = left
+		if leftM3-stepM3 < 1e-9*totalM3 {
+			stepM3 = leftM3
 		}
-		half := step / 2
+		half := stepM3 / b.condensateM3(v) / 2
 		mid, err := b.vapour((b.water - half*v.YWater) / (b.water + b.solvent - half))
 		if err != nil {
 			return err
 		}
+		step := stepM3 / b.condensateM3(mid)
 		b.water -= step * mid.YWater
 		b.solvent -= step * (1 - mid.YWater)
 		b.countUnreturned(step, mid)
@@ -314,9 +313,25 @@ func (b *boiling) fill() error {
 			return err
 		}
 		b.boil(step*b.condensing(mid), lost, step*(1-mid.YWater), v.TempK)
-		left -= step
+		leftM3 -= stepM3
 	}
 	b.note()
+	return nil
+}
+
+// condensateM3 is the volume of a mole of condensed vapour in the receiver.
+func (b *boiling) condensateM3(v thermo.Vapour) float64 {
+	return b.m.MolarVolume(v.YWater, b.eq.ReceiverK)
+}
+
+// outlasts reports ErrNoTrap where a fill of the receiver leaves too little in the pot.
+func (b *boiling) outlasts(fillM3 float64) error {
+	if fillM3 >= b.solvent*b.m.MolarVolume(0, b.eq.ReceiverK) {
+		return fmt.Errorf("%w: the receiver holds %.3g L and would take the whole charge", ErrNoTrap, 1e3*fillM3)
+	}
+	if potM3 := (b.water + b.solvent) * b.m.MolarVolume(b.fraction(), b.eq.ReceiverK); fillM3 > (1-leastHeel)*potM3 {
+		return fmt.Errorf("%w: the receiver holds %.3g L before anything returns, which would leave less than %.0f %% of the charge in the pot", ErrNoTrap, 1e3*fillM3, 100*leastHeel)
+	}
 	return nil
 }
 

@@ -19,7 +19,7 @@ type TrapNode struct {
 	Water        float64 // kg/kg in the pot
 	BoiledMol    float64 // vapour boiled up from the wettest node to here, mol/mol
 	HeatJ        float64 // for that vapour, the layer that returns and the pot that warms, J/mol
-	LnLeft       float64 // ln of the moles left when vapour is drawn off without return, from the wettest node to here
+	LnLeftM3     float64 // ln of the volume left, at the receiver's temperature, when vapour is drawn off without return, from the wettest node to here
 	YWater       float64 // of the vapour, mole fraction
 	LatentJ      float64 // of a mole of vapour
 	PotK         float64
@@ -48,10 +48,11 @@ func TrapTable(eq *TrapEquilibrium, rules TrapRules, roomK float64, waters []flo
 			continue
 		}
 		from := nodes[i+1]
-		if n.LnLeft, err = b.drawnOff(from.Water, n.Water); err != nil {
+		lnLeftMol, err := b.drawnOff(from.Water, n.Water)
+		if err != nil {
 			return nil, err
 		}
-		n.LnLeft += from.LnLeft
+		n.LnLeftM3 = from.LnLeftM3 + lnLeftMol + math.Log(b.potM3PerMol(n.Water)/b.potM3PerMol(from.Water))
 		b.setRest(from.Water)
 		b.potK, b.boiledMol, b.boilUpJ = from.PotK, 0, 0
 		if err := b.segment(b.m.MoleFraction(n.Water)); err != nil {
@@ -70,7 +71,13 @@ func (b *boiling) setRest(water float64) {
 	b.solvent = 1 + solventPerWater*b.water
 }
 
-// drawnOff is ln of the share of a pot that is left when vapour is drawn off
+// potM3PerMol is the molar volume of a pot with a water content (kg/kg), at the
+// receiver's temperature.
+func (b *boiling) potM3PerMol(water float64) float64 {
+	return b.m.MolarVolume(b.m.MoleFraction(water), b.eq.ReceiverK)
+}
+
+// drawnOff is ln of the share of the moles in a pot that is left when vapour is drawn off
 // without return between two water contents:
 //
 //	d ln N/d ln x = x/(y - x)

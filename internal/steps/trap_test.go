@@ -57,11 +57,10 @@ func byFineSteps(t *testing.T, eq *steps.TrapEquilibrium, feed steps.Lot, reach 
 		potK = tK
 		return heat
 	}
-	fillMol := r.FillVolumeM3 / m.MolarVolume(v.YWater, eq.ReceiverK)
 	const fillSteps = 2000
 	for range fillSteps {
-		dn := fillMol / fillSteps
 		v = vapour(water, solvent)
+		dn := r.FillVolumeM3 / fillSteps / m.MolarVolume(v.YWater, eq.ReceiverK)
 		water, solvent = water-dn*v.YWater, solvent-dn*(1-v.YWater)
 		boiledMol += dn
 		heatJ += dn*latent(v) + warm(v.TempK)

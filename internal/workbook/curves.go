@@ -21,7 +21,7 @@ var curveKinds = []curveKind{
 	{steps.Soak, "Loading of a sorbent against water and its activity, at room temperature", column{name: "Sorbent"},
 		[]column{{"Water", "kg/kg"}, {"Activity of water", "1"}, {"Held", "kg/kg"}}, []string{"load_water", "load_activity", "load_held"}},
 	{steps.Trap, "Pot under a trap: vapour boiled up and heat for one mole of what stays, from the wettest pot on", column{name: "Receiver"},
-		[]column{{"Water in the pot", "kg/kg"}, {"Vapour boiled up", "mol/mol"}, {"Heat", "J/mol"}, {"ln of what is left", "1"}, {"Water in the vapour", "mol/mol"}, {"Latent heat", "J/mol"}, {"To warm water", "J/mol"}, {"To warm solvent", "J/mol"}},
+		[]column{{"Water in the pot", "kg/kg"}, {"Vapour boiled up", "mol/mol"}, {"Heat", "J/mol"}, {"ln of the volume left", "1"}, {"Water in the vapour", "mol/mol"}, {"Latent heat", "J/mol"}, {"To warm water", "J/mol"}, {"To warm solvent", "J/mol"}},
 		[]string{"trap_water", "trap_vapour_boiled", "trap_heat", "trap_left", "trap_vapour", "trap_latent", "trap_warm_w", "trap_warm_s"}},
 	{steps.Forerun, "Pot of a forerun: what is left and heat for one mole of the wettest pot", column{name: "Stages"},
 		[]column{{"Water in the pot", "kg/kg"}, {"ln of what is left", "1"}, {"Heat", "J/mol"}, {"To warm water", "J/mol"}, {"To warm solvent", "J/mol"}},

@@ -102,16 +102,16 @@ def trap(q):
         return (nw * cp("water", t) + ns * cp("solvent", t)) * slope * dx
 
     start = nw, ns = q["water_kg"] / mw, q["solvent_kg"] / ms
-    t0, y0 = vapour(nw, ns)
+    t0, _ = vapour(nw, ns)
     # The receiver fills: nothing returns.
-    fill = q["fill_m3"] / (y0 * mw / rho("water", rec) + (1 - y0) * ms / rho("solvent", rec))
-
     def filling(_, s):
+        """Per cubic metre of condensate."""
         t, y = vapour(s[0], s[1])
-        return [-y, -(1 - y), y * mw + (1 - y) * ms,
-                y * hv("water", t) + (1 - y) * hv("solvent", t) + warming(s[0], s[1], -y, -(1 - y))]
+        per_mole = [-y, -(1 - y), y * mw + (1 - y) * ms,
+                    y * hv("water", t) + (1 - y) * hv("solvent", t) + warming(s[0], s[1], -y, -(1 - y))]
+        return np.array(per_mole) / (y * mw / rho("water", rec) + (1 - y) * ms / rho("solvent", rec))
 
-    s = solve_ivp(filling, [0, fill], [nw, ns, 0, 0], method="LSODA", rtol=1e-7, atol=1e-10).y[:, -1]
+    s = solve_ivp(filling, [0, q["fill_m3"]], [nw, ns, 0, 0], method="LSODA", rtol=1e-7, atol=1e-10).y[:, -1]
 
     def water(s):
         return s[0] * mw / (s[0] * mw + s[1] * ms)
