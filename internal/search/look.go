@@ -59,19 +59,48 @@ func (g *tuning) lateAxes() {
 	g.inPairs()
 }
 
+// worthARound is the share of the score that a round over all hand-overs lowers it by at
+// least; less than a tie, which comes on top.
+const worthARound = 1e-3
+
 // lateAcross goes downhill from the best spot's axes at all hand-overs, as often as that
-// brings more than a tie: the more lots go over a charge, the more it pays to hand over dry.
+// is worth a round, and at those beside the best: the more lots go over a charge, the more
+// it pays to hand over dry.
 func (g *tuning) lateAcross(grid [][]float64) {
-	for better := true; better; {
-		kept := g.best
-		g.acrossGrid(grid)
-		g.lateAxes()
-		if better = !tied(kept.score, g.best.score); better {
-			g.refine(1.0 / (coarsePoints - 1))
-		} else {
-			g.best = kept
+	for g.worth(func() { g.acrossGrid(grid); g.lateAxes() }) {
+		g.refine(1.0 / (coarsePoints - 1))
+	}
+	if g.worth(func() { g.acrossGrid(g.beside(g.best.spot.u)) }) {
+		g.refine(1.0 / (coarsePoints - 1) / besidePoints)
+	}
+}
+
+// worth makes a round and reports whether it was worth it; where it was not the best is
+// what it was before.
+func (g *tuning) worth(round func()) bool {
+	kept := g.best
+	if round(); g.best.score < kept.score*(1-worthARound) {
+		return true
+	}
+	g.best = kept
+	return false
+}
+
+// besidePoints divide the way to the next coarse hand-over.
+const besidePoints = 4
+
+// beside are the hand-overs within a coarse step of one, moved one by one.
+func (g *tuning) beside(u []float64) (all [][]float64) {
+	for i := range u {
+		for k := 1 - besidePoints; k < besidePoints; k++ {
+			v := slices.Clone(u)
+			v[i] += float64(k) / besidePoints * (g.hi[i] - g.lo[i]) / (coarsePoints - 1)
+			if v[i] = math.Min(math.Max(v[i], g.lo[i]), g.hi[i]); k != 0 {
+				all = append(all, v)
+			}
 		}
 	}
+	return all
 }
 
 // acrossGrid goes downhill from the best spot's axes at each of the hand-overs.
