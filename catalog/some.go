@@ -6,13 +6,13 @@ import (
 	"strings"
 )
 
-// nameList holds a line for each solvent: its key, its name and its aliases, parted by
-// semicolons. It is written with packed.bin and only ever a quicker way to a file.
+// nameList holds a line for each solvent: its key, its name, its aliases and its CAS
+// number, parted by semicolons. It is written with packed.bin and only ever a quicker way to a file.
 //
 //go:embed names.txt
 var nameList string
 
-// keyNamed finds the key of a solvent by key, name or alias; case does not count.
+// keyNamed finds the key of a solvent by key, name, alias or CAS number; case does not count.
 func keyNamed(name string) (key string, ok bool) {
 	name = strings.TrimSpace(name)
 	for line := range strings.Lines(nameList) {
@@ -92,7 +92,7 @@ func Names(cat *Catalog) []byte {
 	var list strings.Builder
 	for _, key := range keysOf(cat.Solvents) {
 		v := cat.Solvents[key]
-		list.WriteString(strings.Join(slices.Compact(append([]string{key, v.Name}, v.Aliases...)), ";") + "\n")
+		list.WriteString(strings.Join(v.calledAll(), ";") + "\n")
 	}
 	return []byte(list.String())
 }

@@ -26,7 +26,7 @@ func (q *Question) stage() routes.Stage {
 	return s
 }
 
-// carrier finds the carrier by key, name or alias.
+// carrier finds the carrier by key, name, alias or CAS number.
 func (r *reader) carrier() {
 	typed, ok := r.flags["carrier"]
 	if !ok || !slices.Contains(uses[r.q.Kind].takes, "carrier") {
@@ -34,14 +34,8 @@ func (r *reader) carrier() {
 	}
 	carriers := slices.Sorted(maps.Keys(r.cat.Carriers))
 	for _, key := range carriers {
-		s := r.cat.Solvents[key]
-		if s == nil {
-			continue // not read for this question
-		}
-		for _, word := range slices.Concat([]string{s.Key, s.Name}, s.Aliases) {
-			if strings.EqualFold(word, strings.TrimSpace(typed)) {
-				r.q.Carrier = s
-			}
+		if s := r.cat.Solvents[key]; s != nil && s.IsCalled(typed) { // nil: not read for this question
+			r.q.Carrier = s
 		}
 	}
 	switch {

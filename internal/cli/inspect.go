@@ -95,7 +95,7 @@ func findCarrier(c *cli.Context, cat *catalog.Catalog, solvent *catalog.Solvent)
 	return "", misused(fmt.Sprintf("--carrier: %q is not a carrier of the catalog", typed), hint)
 }
 
-// findSolvent finds a solvent by key, name or alias; case does not count.
+// findSolvent finds a solvent by key, name, alias or CAS number; case does not count.
 func findSolvent(cat *catalog.Catalog, name string) (*catalog.Solvent, error) {
 	var known []string
 	for _, key := range slices.Sorted(maps.Keys(cat.Solvents)) {
@@ -103,18 +103,16 @@ func findSolvent(cat *catalog.Catalog, name string) (*catalog.Solvent, error) {
 		if s.Water == nil {
 			continue
 		}
-		for _, word := range slices.Concat([]string{s.Key, s.Name}, s.Aliases) {
-			if strings.EqualFold(word, strings.TrimSpace(name)) {
-				return s, nil
-			}
-			known = append(known, word)
+		if s.IsCalled(name) {
+			return s, nil
 		}
+		known = append(known, s.Words()...)
 	}
 	hint := "solvents: " + strings.Join(solventKeys(cat), ", ")
 	if near := document.Nearest(name, known); len(near) > 0 {
 		hint = "did you mean " + strings.Join(near, " or ") + "?"
 	}
-	if s := cat.Solvents["water"]; s != nil && strings.EqualFold(strings.TrimSpace(name), s.Name) {
+	if s := cat.Solvents["water"]; s != nil && s.IsCalled(name) {
 		return nil, misused(`"water" is what is taken out: a solvent is wanted here`, "its own numbers: parch catalog solvents water")
 	}
 	return nil, misused(fmt.Sprintf("%q is not a solvent of the catalog", name), hint)

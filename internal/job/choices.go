@@ -184,7 +184,7 @@ func (r *reader) agentKeys() []string {
 // water is the key of water in the catalog.
 const water = "water"
 
-// solvent finds a solvent by key, name or alias; case does not count.
+// solvent finds a solvent by key, name, alias or CAS number; case does not count.
 func (r *reader) solvent(n *document.Node) *catalog.Solvent {
 	typed := n.Text()
 	if typed == "" {
@@ -193,18 +193,16 @@ func (r *reader) solvent(n *document.Node) *catalog.Solvent {
 	var known []string
 	for _, key := range slices.Sorted(maps.Keys(r.cat.Solvents)) {
 		s := r.cat.Solvents[key]
-		for _, word := range append([]string{s.Key, s.Name}, s.Aliases...) {
-			switch {
-			case !strings.EqualFold(word, typed):
-			case key == water:
-				n.Fail("water is what is taken out; name the solvent it is in")
-				return nil
-			default:
-				return s
-			}
-			if key != water {
-				known = append(known, word)
-			}
+		switch {
+		case !s.IsCalled(typed):
+		case key == water:
+			n.Fail("water is what is taken out; name the solvent it is in")
+			return nil
+		default:
+			return s
+		}
+		if key != water {
+			known = append(known, s.Words()...)
 		}
 	}
 	offer := n.Offer(typed, known)

@@ -90,7 +90,7 @@ func (s *sorption) balanced(lnHighest float64, surplus func(w float64) float64) 
 }
 
 func (s *sorption) wetter() error {
-	return fmt.Errorf("%w: %s holding %.3g g/100 g against %s", ErrWetSieve, s.sorbent.called(), 100*s.sorbent.ResidualKgPerKg, quantity.FormatWater(s.feed.Water()))
+	return fmt.Errorf("%w: %s holding %.3g g/100 g against %s; activate it anew or take a fresh charge", ErrWetSieve, s.sorbent.called(), 100*s.sorbent.ResidualKgPerKg, quantity.FormatWater(s.feed.Water()))
 }
 
 // check refuses a pair that has no equilibrium to rest on and a temperature at
