@@ -308,6 +308,9 @@ func TestSolventLostByCause(t *testing.T) {
 // Every route of the three jobs, of the demonstration and of two more: heads add up to the total, the search's float price
 // agrees, and the emissions by origin add up to those of the run.
 func TestEveryRouteOfTheJobs(t *testing.T) {
+	if testing.Short() {
+		t.Skip("many whole comparisons")
+	}
 	halogenated := `
 date: 2026-12-01
 equipment costing: annuity

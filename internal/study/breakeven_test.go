@@ -79,6 +79,9 @@ func (q *question) at(t *testing.T, b *BreakEven, x float64) *search.Tuner {
 // possible the order changes too. Where it never changes the same route is the cheapest
 // over the whole range. The routes are tuned anew, without what the search knew.
 func TestOrderChangesAtTheBreakEven(t *testing.T) {
+	if testing.Short() {
+		t.Skip("many whole comparisons")
+	}
 	kinds := map[string]int{}
 	for _, name := range workedJobs {
 		for _, draws := range []int{0, 400} {
@@ -158,6 +161,9 @@ func (q *question) checkNever(t *testing.T, what string, b *BreakEven) {
 // What the worked jobs are there to show: pre-drying pays for the wet ester whose
 // sieve is used once, and not for acetonitrile.
 func TestWorkedJobs(t *testing.T) {
+	if testing.Short() {
+		t.Skip("many whole comparisons")
+	}
 	for name, preDried := range map[string]bool{"reclaimed-ethyl-acetate": true, "acetonitrile": false} {
 		r, _ := worked(t, name)
 		best := r.Lots[0].Best()

@@ -15,6 +15,9 @@ import (
 // Twice the draws tell the same of every route that is recommended first, in the worked
 // jobs and in the demonstration.
 func TestDoublingTheDrawsChangesNoFigure(t *testing.T) {
+	if testing.Short() {
+		t.Skip("many whole comparisons")
+	}
 	c, err := catalog.Load()
 	if err != nil {
 		t.Fatal(err)

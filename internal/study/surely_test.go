@@ -11,6 +11,9 @@ import (
 // says that it is not. As things are a route costs there what it does in the ranking, or
 // a little less, as its settings are not rounded and its stand may be a longer one.
 func TestOnlySureRoutesAreAskedOf(t *testing.T) {
+	if testing.Short() {
+		t.Skip("many whole comparisons")
+	}
 	for _, name := range workedJobs {
 		r, c := workedWith(t, name, Options{Draws: 400, Seed: 1})
 		l := &r.Lots[0]

@@ -13,7 +13,7 @@ import (
 // sure has to find that out of its own.
 func TestATimeLimitMakesNothingCheaper(t *testing.T) {
 	if testing.Short() {
-		t.Skip("eight comparisons with draws")
+		t.Skip("many whole comparisons")
 	}
 	for _, lot := range []string{
 		"solvent: ethanol, water: 1000 mg/kg, target: 20 mg/kg",
