@@ -58,13 +58,13 @@ func (c *Case) refuseCarrier(key string) (reason, source string) {
 	if !ok {
 		return fmt.Sprintf("%s is no carrier of the catalog", key), ""
 	}
-	if carrier.ByName && !c.CarrierAccepted(key) {
-		return carrier.Reason + ": name it under accept: carriers", carrier.Source
-	}
 	for _, class := range carrier.NotWith {
 		if class == c.Solvent.Class {
 			return fmt.Sprintf("%s reacts with %s: %s", key, c.Solvent.Name, carrier.NotWithReason), carrier.NotWithOrigin.Source
 		}
+	}
+	if carrier.ByName && !c.CarrierAccepted(key) {
+		return carrier.Reason + ": name it under accept: carriers", carrier.Source
 	}
 	if h := c.Catalog.Solvents[key].Hazards; h.PeroxideClass != "none" && h.PeroxideClass != "" && !c.CarrierAccepted(key) {
 		return fmt.Sprintf("test first: %s forms peroxides (class %s); name it under accept: carriers once it is tested", key, h.PeroxideClass), h.Source

@@ -46,6 +46,8 @@ func (c *Case) MayFollow(before Route, next Stage) string {
 		return "the same as one step with a larger dose, or in several charges"
 	case next == last:
 		return "the same step again leaves what it left"
+	case c.dangerousWithCarrier(before, next.Agent) != "":
+		return c.dangerousWithCarrier(before, next.Agent)
 	case last.Kind == steps.Reactive:
 		return "the distillate off a reactive agent is run into its bottle"
 	case bed(last) && bed(next) || slices.Index(order, next.Kind) >= slices.Index(order, last.Kind):
@@ -56,6 +58,19 @@ func (c *Case) MayFollow(before Route, next Stage) string {
 		return "beads are for the last of the water: what a still takes is taken before them"
 	}
 	return "a forerun takes solvent with the water: a trap that returns it comes first"
+}
+
+// dangerousWithCarrier says why an agent must not meet what is left of the carrier of a
+// chain, or nothing.
+func (c *Case) dangerousWithCarrier(before Route, agent string) string {
+	carrier := c.Catalog.Solvents[before.CarrierOf()]
+	if carrier == nil || agent == "" {
+		return ""
+	}
+	if v, ok := c.Catalog.Verdict(carrier, agent); ok && v.Word == "dangerous" {
+		return fmt.Sprintf("%s is dangerous with the %s that is left: %s", agent, carrier.Name, v.Reason)
+	}
+	return ""
 }
 
 // MayEnd gives the reason why a chain may not end with a step, or "".

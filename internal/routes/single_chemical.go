@@ -150,11 +150,15 @@ func (c *Case) reactiveAgent(key string) steps.ReactiveAgent {
 
 func (c *Case) reactiveRig(key string) steps.ReactiveRig {
 	still, charges := c.Still()
+	hottestK := 0.0
+	if limit := c.Solvent.HottestPot; limit != nil {
+		hottestK = limit.SI
+	}
 	return steps.ReactiveRig{
 		PressurePa: c.Job.Site.PressurePa, RoomK: c.Job.Site.RoomK, HeaterW: c.heaterW(still), HeatShare: c.practice("heat-share"),
 		RefluxS: c.practice("reactive-reflux"), Surplus: c.Catalog.Agents[key].Reaction.Surplus.SI, LeastKgPerM3: c.practice("reactive-least"),
 		HeelShare: c.practice("forerun-heel"), Charges: charges, SetUpS: c.practice("reactive-attended"),
 		AttendedShare: c.practice("trap-attended-share"), CoolingFlowM3S: c.practice("cooling-flow"), VapourLossPerDay: c.practice("vapour-loss-per-day"),
-		LongestHeatUpS: c.practice("heat-up-maximum"),
+		LongestHeatUpS: c.practice("heat-up-maximum"), HighestPotK: hottestK,
 	}
 }

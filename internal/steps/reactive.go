@@ -63,6 +63,7 @@ type ReactiveRig struct {
 	CoolingFlowM3S   float64
 	VapourLossPerDay float64 // share of the charge
 	LongestHeatUpS   float64 // 0: no limit
+	HighestPotK      float64 // 0: no limit
 }
 
 // leastHeel is never boiled away: residues of peroxides and surplus agent stay

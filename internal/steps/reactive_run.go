@@ -22,6 +22,9 @@ func runReactive(m *thermo.Mixture, feed Lot, agent ReactiveAgent, found Measure
 	if err != nil {
 		return Outcome{}, err
 	}
+	if rig.HighestPotK > 0 && boilK > rig.HighestPotK {
+		return Outcome{}, fmt.Errorf("%w: the pot reaches %.1f °C at %.4g kPa, the limit is %.1f °C", ErrNoReactive, boilK-273.15, rig.PressurePa/1e3, rig.HighestPotK-273.15)
+	}
 	left, err := agent.residual(m, feed, found, rig)
 	if err != nil {
 		return Outcome{}, err

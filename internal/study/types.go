@@ -68,7 +68,7 @@ func (l *Lot) OfSure() bool { return l.surely != nil }
 // AskedOf says so.
 func (l *Lot) AskedOf() string {
 	if l.OfSure() {
-		return "each route as far under the limit as makes it sure now"
+		return "each route with the aim, stands, charges and lots over a charge that make it sure now"
 	}
 	return "whatever the chance"
 }
