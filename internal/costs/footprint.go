@@ -65,7 +65,7 @@ func FootprintOf(cat *catalog.Catalog, solvent *catalog.Solvent, roomK float64, 
 // Text says where a batch's emissions come from.
 func (f Footprint) Text() string {
 	if math.IsNaN(f.TotalKg()) {
-		return "no emission factor for part of it"
+		return "what is not known, for want of an emission factor"
 	}
 	return fmt.Sprintf("%.3g kg CO2e: energy %.2g, making solvent %.2g, burning it %.2g, agent %.2g", f.TotalKg(), f.EnergyKg, f.MakingKg, f.BurningKg, f.AgentKg)
 }

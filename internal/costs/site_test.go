@@ -221,7 +221,7 @@ func TestFootprintByHand(t *testing.T) {
 	}
 	delete(cat.Emissions, "making/sieve-3a")
 	f = costs.FootprintOf(cat, toluene, 293.15, costs.Plan{Run: &run})
-	if !math.IsNaN(f.TotalKg()) || f.Text() != "no emission factor for part of it" {
+	if !math.IsNaN(f.TotalKg()) || f.Text() != "what is not known, for want of an emission factor" {
 		t.Errorf("a missing factor: %q", f.Text())
 	}
 }

@@ -83,7 +83,11 @@ func reason(r *study.Report, reach []*study.Route) string {
 	if head, share := largestHead(best); share > 0 {
 		text += fmt.Sprintf(" %s is %s of its cost.", headNames[head], quantity.FormatShare(math.Round(100*share)/100))
 	}
-	if len(reach) > 1 {
+	switch {
+	case len(reach) == 1:
+	case r.Job.Objective == "cost" && best.Bill.Priced() && !reach[1].Bill.Priced():
+		text += " The others lack a price and are not compared by cost."
+	default:
 		text += fmt.Sprintf(" The next best is %s, at %s%s.", reach[1].ID, value(reach[1]), more(reach))
 	}
 	return text
