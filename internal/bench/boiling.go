@@ -95,16 +95,17 @@ func (a *Answer) adviseCarrier() {
 		}
 	}
 	a.tell("carrier", "%s of %s, %s", weighed(a.CarrierKg), q.Carrier.Name, chosen)
-	trapped := quantity.FormatWater(a.Figure("water in the pot when the trap stops") / mgPerKg)
-	if a.Figure("water in the pot when the trap stops")/mgPerKg < a.Out.Water() { // as computed; no trap is known to do so
-		trapped = "less than " + quantity.FormatWater(a.Out.Water())
+	pot, lowest := a.Figure("water in the pot when the trap stops")/mgPerKg, a.Case.Catalog.Practice["trap-outlet-minimum"].SI
+	trapped := quantity.FormatWater(pot)
+	if pot < lowest { // as computed; no trap is known to do so
+		trapped = "less than " + quantity.FormatWater(lowest)
 	}
 	stripped := "with hardly any carrier left in the pot to strip"
 	if a.Figure("volume drawn off, each charge") > 0 {
 		stripped = fmt.Sprintf("then stripped over %d stages in %s h%s: %s", q.Stages, quantity.Significant(a.Figure("stripping, each charge"), 3),
 			ofEach(a.Figure("still charges")), drawnVolume(a.Figure("volume drawn off, each charge")))
 	}
-	a.tell("carrier", "trapped down to %s, %s", trapped, stripped)
+	a.tell("carrier", "trapped down to %s in the pot, carrier included, %s", trapped, stripped)
 	a.tell("carrier", "%s of it stay in the product, %s are in the aqueous layer, %s are lost in all: state what is left, and ask whether the use allows it",
 		quantity.FormatWater(a.Out.Carrier()), weighed(a.Figure("carrier in the aqueous layer")), weighed(a.CarrierLostKg))
 }

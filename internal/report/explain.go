@@ -96,7 +96,7 @@ func (p *page) explainStep(n int, o *steps.Outcome) {
 	}
 	floor := "none"
 	if !math.IsNaN(o.Floor) {
-		floor = quantity.FormatWater(o.Floor)
+		floor = withPlace(quantity.FormatWater(o.Floor), o.FloorOf)
 	}
 	p.say(5, 4, "In: %.6g kg with %s. Out: %.6g kg with %s. Floor: %s.", o.In.MassKg(), quantity.FormatWater(o.In.Water()), o.Out.MassKg(), quantity.FormatWater(o.Out.Water()), floor)
 	p.say(5, 4, "Stops: %s.", firstText(o.WhyText, string(o.Why)))

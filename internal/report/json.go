@@ -108,6 +108,7 @@ type stepOut struct {
 	EnergyKWh     number     `json:"energy_kwh"`
 	AgentKg       number     `json:"agent_kg"`
 	SolventLostL  number     `json:"solvent_lost_l"`
+	FloorOf       string     `json:"floor_of,omitempty"` // what has this floor, and when, where it is not the outlet's own
 }
 
 type cautionOut struct {
@@ -298,6 +299,7 @@ func showStep(o *steps.Outcome) stepOut {
 		EnergyKWh:     number(o.EnergyKWh),
 		AgentKg:       number(o.AgentKg),
 		SolventLostL:  number(o.SolventLostL),
+		FloorOf:       o.FloorOf,
 	}
 }
 

@@ -112,7 +112,15 @@ func floor(a *bench.Answer) string {
 	if math.IsNaN(a.Floor) {
 		return "none was met"
 	}
-	return quantity.FormatWater(a.Floor)
+	return withPlace(quantity.FormatWater(a.Floor), a.FloorOf)
+}
+
+// withPlace adds to a floor what it is the floor of, where that is not plain.
+func withPlace(floor, of string) string {
+	if of == "" {
+		return floor
+	}
+	return floor + ", of " + of
 }
 
 func freeWater(q *bench.Question) string {

@@ -37,11 +37,11 @@ func (r *refluxing) outcome(feed Lot) Outcome {
 	for i := r.trappedAt; i < len(o.Course); i++ { // stripping begins when the reflux is over, however soon the trap was done
 		o.Course[i].Hours += (refluxS - trapS) / secondsPerHour
 	}
-	if r.why == AtFloor && r.half != stripOnly {
-		o.Floor = r.dryness(&r.trapped)
-	}
 	o.CoolingWaterL = n * o.Condenser.RunM3PerS * (refluxS + stripS) * litrePerM3
-	r.share(&o, n, (refluxS+stripS)/secondsPerDay*r.rules.VapourLossPerDay)
+	wetter := r.share(&o, n, (refluxS+stripS)/secondsPerDay*r.rules.VapourLossPerDay)
+	if r.why == AtFloor && r.half != stripOnly {
+		r.floor(&o, wetter)
+	}
 	o.Out.TempK = outK
 	o.account(r.m.Pure[inSolvent], r.rig.RoomK)
 	o.Balance.CarrierAddedKg, o.Balance.CarrierOutKg = r.plan.DoseKg+feed.CarrierKg, o.Out.CarrierKg
@@ -53,9 +53,31 @@ func (r *refluxing) outcome(feed Lot) Outcome {
 	return o
 }
 
+// floor is what a trap that went as far as it can leaves, in kg of water per kg of what is
+// in the pot, as the outlet: with the carrier that is in it. Stripping takes water along,
+// so that the floor of the whole operation is that of its product. Where droplets and moist
+// air keep that wetter they are what it stops at, and a trace that is only computed is no floor.
+func (r *refluxing) floor(o *Outcome, wetter bool) {
+	o.Floor, o.FloorOf = r.water(&r.s), "the pot, carrier included, when the trap stops"
+	if r.half == bothHalves {
+		o.FloorOf = "the product, with the carrier stripped"
+	}
+	switch {
+	case wetter:
+		o.Why = AtPractice
+		o.WhyText = fmt.Sprintf("practical limit: droplets and moist air keep an outlet at %s or more; the trap's %s", quantity.FormatWater(r.rules.LowestOutlet), o.WhyText)
+		if r.half == bothHalves {
+			o.Floor, o.FloorOf = math.NaN(), ""
+		}
+	case r.half == bothHalves:
+		o.WhyText += fmt.Sprintf("; stripped, %s are left", quantity.FormatWater(o.Out.Water()))
+	}
+}
+
 // share parts lot and dose into product, layers, strippings and vapour past the
-// condenser, which is taken to be like the pot.
-func (r *refluxing) share(o *Outcome, n, vapourShare float64) {
+// condenser, which is taken to be like the pot. Wetter tells that droplets and moist air
+// keep the product wetter than computed.
+func (r *refluxing) share(o *Outcome, n, vapourShare float64) (wetter bool) {
 	kg := func(amounts Fractions, component int) float64 { return n * r.kg(amounts[component], component) }
 	pot := r.s.pot
 	vapour := scaled(pot, vapourShare)
@@ -85,6 +107,7 @@ func (r *refluxing) share(o *Outcome, n, vapourShare float64) {
 	o.Balance.WaterRemovedKg = gone[inWater] - regained
 	o.Balance.CarrierRemovedKg = gone[inCarrier]
 	o.CarrierLostKg = gone[inCarrier]
+	return regained > 0
 }
 
 // classOf is the class of waste of a layer: of an alcohol the aqueous one may hold more
@@ -126,7 +149,7 @@ func (r *refluxing) figures(o *Outcome, heatUpS, refluxS, stripS, drainings floa
 		{"aqueous layer, each charge", "mL", r.aqueousM3() * 1e6},
 		{"drainings, each charge", "", drainings},
 		{holdsOfWater, "mL", r.rig.UsableVolumeM3 * 1e6},
-		{"water in the pot when the trap stops", "mg/kg", r.dryness(&r.trapped) * mgPerKg},
+		{"water in the pot when the trap stops", "mg/kg", r.water(&r.trapped) * mgPerKg},
 		{"carrier left in the product", "mg/kg", o.Out.Carrier() * mgPerKg},
 		{"carrier in the aqueous layer", "kg", float64(r.rig.Charges) * r.kg(r.s.aqueous[inCarrier], inCarrier)},
 		{"volume drawn off, each charge", "L", r.liquidM3(r.s.drawn, r.rig.RoomK) * litrePerM3},
@@ -171,5 +194,5 @@ func (r *refluxing) reached() string {
 	if r.why == AtPractice {
 		return fmt.Sprintf("practical limit: droplets and moist air keep a trap's outlet at %s or more", quantity.FormatWater(r.rules.LowestOutlet))
 	}
-	return fmt.Sprintf("hand-over at %s reached", quantity.FormatWater(r.plan.Goal))
+	return fmt.Sprintf("hand-over at %s of water and solvent reached, with %s in the pot, carrier included", quantity.FormatWater(r.plan.Goal), quantity.FormatWater(r.water(&r.trapped)))
 }

@@ -161,6 +161,12 @@ func (r *refluxing) dryness(s *state) float64 {
 	return w / (w + r.kg(s.pot[inSolvent], inSolvent))
 }
 
+// water is the mass fraction of water in the pot, kg/kg, carrier included: what Karl
+// Fischer reads of a sample.
+func (r *refluxing) water(s *state) float64 {
+	return r.kg(s.pot[inWater], inWater) / r.massKg(s.pot)
+}
+
 func (r *refluxing) netW() float64 { return r.rig.HeaterW * r.rig.HeatShare }
 
 func (r *refluxing) start(feed Lot) error {

@@ -163,33 +163,33 @@ func (r *refluxing) nearest(s *state, c *condensed) int {
 
 // ended says why a trap that has not reached its goal has come to its end.
 func (r *refluxing) ended(s *state, c *condensed) (stop Stop, text string) {
-	pot := quantity.FormatWater(r.dryness(s))
+	pot := quantity.FormatWater(r.water(s)) + " in the pot, carrier included"
 	receiver := r.eq.ReceiverK - 273.15
 	l := r.m.Settle(c.split, r.eq.ReceiverK)
 	if s.pot[inCarrier]/total(s.pot) < leastCarrier*(1+1e-3) {
-		return AtCarrier, fmt.Sprintf("carrier used up: what is left of %s stands in the receiver, with %s in the pot; take more", r.m.Pure[inCarrier].Called(), pot)
+		return AtCarrier, fmt.Sprintf("carrier used up: what is left of %s stands in the receiver, with %s; take more", r.m.Pure[inCarrier].Called(), pot)
 	}
 	if !c.split.Exists {
-		return AtOneLayer, fmt.Sprintf("no second layer: the condensate of a pot at %s is one liquid at %.0f °C", pot, receiver)
+		return AtOneLayer, fmt.Sprintf("no second layer: the condensate is one liquid at %.0f °C, with %s", receiver, pot)
 	}
 	if r.timeSpent(r.spentJ) > 1-1e-4 {
-		return AtTime, fmt.Sprintf("time: %.3g h under the trap are over, with %s in the pot", r.plan.LongestS/secondsPerHour, pot)
+		return AtTime, fmt.Sprintf("time: %.3g h under the trap are over, with %s", r.plan.LongestS/secondsPerHour, pot)
 	}
 	switch r.nearest(s, c) {
 	case byHeel:
 		return AtHeel, fmt.Sprintf("heel: the aqueous layer has taken all but %.0f %% of the charge", 100*r.plan.HeelShare)
 	case byDensity:
-		return AtExchange, fmt.Sprintf("the layers' densities have come together with %s in the pot: organic %.0f, aqueous %.0f kg/m3 differ by %.1f %% only and do not settle",
+		return AtExchange, fmt.Sprintf("the layers' densities have come together, with %s: organic %.0f, aqueous %.0f kg/m3 differ by %.1f %% only and do not settle",
 			pot, l.OrganicKgPerM3, l.AqueousKgPerM3, 100*l.DensityDifference())
 	case byReturn:
-		return AtOneLayer, fmt.Sprintf("no organic layer: the condensate of a pot at %s is hardly anything but aqueous layer at %.0f °C", pot, receiver)
+		return AtOneLayer, fmt.Sprintf("no organic layer: the condensate is hardly anything but aqueous layer at %.0f °C, with %s", receiver, pot)
 	case byWater:
-		return AtFloor, fmt.Sprintf("floor: with %s in the pot the aqueous layer is no wetter", pot)
+		return AtFloor, fmt.Sprintf("floor: the aqueous layer is no wetter than the pot, with %s", pot)
 	}
 	if r.changedPlaces(c) {
-		return AtExchange, fmt.Sprintf("the layers change places with %s in the pot: organic %.0f, aqueous %.0f kg/m3", pot, l.OrganicKgPerM3, l.AqueousKgPerM3)
+		return AtExchange, fmt.Sprintf("the layers change places, with %s: organic %.0f, aqueous %.0f kg/m3", pot, l.OrganicKgPerM3, l.AqueousKgPerM3)
 	}
-	return AtFloor, fmt.Sprintf("floor: with %s in the pot hardly any second layer forms at %.0f °C", pot, receiver)
+	return AtFloor, fmt.Sprintf("floor: hardly any second layer forms at %.0f °C, with %s", receiver, pot)
 }
 
 // watch notes at an accepted step how well the water of the organic layer is known.

@@ -153,6 +153,7 @@ type Outcome struct {
 	Apparatus     string // key of the piece that was chosen for it, or ""
 	In, Out       Lot
 	Floor         float64 // kg/kg; NaN where the step has none
+	FloorOf       string  // what holds that, and when; "" where it is the lot at the end of the step
 	Why           Stop
 	WhyText       string // the reason in a sentence
 	RuledBy       string // the assumption on which the result turns; "" where none stands out
