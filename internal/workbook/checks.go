@@ -28,15 +28,18 @@ type test struct {
 func (l *layout) checks() *grid {
 	g := newGrid(sheetChecks, "Found and expected must agree within the tolerance. The sum of the flags is 0 when all checks hold.",
 		tabCheck, cell{look: message, formula: "check_message", value: checksHold}, 10, 74, 15, 15, 15, 12, 12, 8, 15)
-	first := frameRows + 8
-	g.table(first-2, "Always checked", checkColumns)
-	g.frozenRows = first - 1
-	always := l.testRows(g, first, l.alwaysTests(), "IFERROR((ABS(E%[1]d)>F%[1]d)*1,1)", `IF(H%[1]d>0,"fails","holds")`)
-	next := g.table(g.next(), "Checked against the program while no input and no price is edited", checkColumns)
-	unedited := l.testRows(g, next, l.programTests(), "IFERROR((inputs_changed=0)*(ABS(E%[1]d)>F%[1]d),1)",
-		fmt.Sprintf(`IF(H%%[1]d>0,"fails",%s)`, fixed(3, frameRows+3)))
+	next := frameRows + 6
+	g.frozenRows = next + 1 // the headings, which both blocks share
+	unedited := rows{1, 0}
+	if tests := l.programTests(); len(tests) > 0 { // the short block first: only the last runs on
+		first := g.table(next, "Checked against the program while no input and no price is edited", checkColumns)
+		unedited = l.testRows(g, first, tests, "IFERROR((inputs_changed=0)*(ABS(E%[1]d)>F%[1]d),1)",
+			fmt.Sprintf(`IF(H%%[1]d>0,"fails",%s)`, fixed(3, frameRows+3)))
+		next = g.next()
+	}
+	always := l.testRows(g, g.table(next, "Always checked", checkColumns), l.alwaysTests(), "IFERROR((ABS(E%[1]d)>F%[1]d)*1,1)", `IF(H%[1]d>0,"fails","holds")`)
 	l.masterRows(g, always, unedited)
-	for _, r := range []rows{always, unedited} {
+	for _, r := range []rows{unedited, always} {
 		if r.empty() {
 			continue
 		}
@@ -90,9 +93,6 @@ func (l *layout) testRows(g *grid, first int, tests []test, flagFormula, wordFor
 			derived(fmt.Sprintf("(ABS(C%[1]d-D%[1]d)>F%[1]d)*(C%[1]d-D%[1]d)", row), difference).in(t.unit).shown("0.0E+00"),
 			number(t.tolerance, t.unit).shown("0.0E+00"), text(plain, t.unit),
 			whole(fmt.Sprintf(flagFormula, row), 0), derived(fmt.Sprintf(wordFormula, row), "holds"))
-	}
-	if len(tests) == 0 {
-		g.put(1, first, text(plain, "Nothing to check."))
 	}
 	return rows{first, first + len(tests) - 1}
 }

@@ -114,3 +114,21 @@ func TestChartsFitInAnyTypeface(t *testing.T) {
 		}
 	}
 }
+
+// The headings of a sheet that repeats them on each page all stand on its first page:
+// another block of rows further on would have them twice where it starts a page.
+func TestRepeatedHeadingsStandOnce(t *testing.T) {
+	for _, k := range everyKind(t) {
+		for _, g := range k.layout.grids {
+			if g.mixed || g.frozenRows == 0 || g.percent > 0 || g.onePage {
+				continue
+			}
+			ends := g.pageEnds()
+			for r, row := range g.rows {
+				if len(ends) > 0 && r+1 >= ends[0] && len(row) > 0 && row[0].look == heading {
+					t.Errorf("%s: row %d of %s holds headings that stand on top of its page already", k.name, r+1, g.name)
+				}
+			}
+		}
+	}
+}
