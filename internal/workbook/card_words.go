@@ -169,7 +169,7 @@ func settingWords(r *routeModel, o *steps.Outcome, stirred bool) string {
 		if stirred {
 			way = "stirred"
 		}
-		parts = append(parts, fmt.Sprintf("%s for %s h", way, significant(o.HoursTotal-o.HoursAttended)))
+		parts = append(parts, fmt.Sprintf("%s for %s h", way, significant(o.Course[len(o.Course)-1].Hours)))
 	}
 	var each []string
 	for _, name := range settingFigures[o.Kind] {
