@@ -140,8 +140,10 @@ func (c *cardModel) choose(column, row, figure int, l look, format, unit string,
 	}
 	from := fmt.Sprintf("$%s%d:$%s%d", columnName(c.helper(figure, 0)), row, columnName(c.helper(figure, len(c.list)-1)), row)
 	v := values[c.chosen]
-	out := cell{look: l, formula: fmt.Sprintf("INDEX(%s,%s)", from, c.index), value: v, format: format, unit: unit}
-	out.right = format != ""
+	out := cell{look: l, formula: fmt.Sprintf("INDEX(%s,%s)", from, c.index), value: v, unit: unit}
+	if format != "" { // a number, or a dash below numbers
+		out.format, out.right = numberOrWords(format), true
+	}
 	c.g.put(column, row, out)
 }
 

@@ -169,7 +169,10 @@ func settingWords(r *routeModel, o *steps.Outcome, stirred bool) string {
 		if stirred {
 			way = "stirred"
 		}
-		parts = append(parts, fmt.Sprintf("%s for %s h", way, significant(o.Course[len(o.Course)-1].Hours)))
+		if n := len(o.Course); n > 0 {
+			way += fmt.Sprintf(" for %s h", significant(o.Course[n-1].Hours))
+		}
+		parts = append(parts, way)
 	}
 	var each []string
 	for _, name := range settingFigures[o.Kind] {

@@ -73,6 +73,9 @@ func numberShown(t *testing.T, v float64, format string) string {
 			format = "0.000"
 		}
 	}
+	if number, ok := strings.CutSuffix(format, ";@"); ok {
+		format, _, _ = strings.Cut(number, ";")
+	}
 	if mantissa, _, ok := strings.Cut(format, "E+"); ok {
 		_, digits, _ := strings.Cut(mantissa, ".")
 		return fmt.Sprintf("%.*E", len(digits), v)
@@ -104,7 +107,7 @@ func TestNumberShown(t *testing.T) {
 	for _, c := range []struct {
 		v            float64
 		format, want string
-	}{{17200, "#,##0.00", "17,200.00"}, {-1234567.8, "#,##0", "-1,234,568"}, {0.05, "General", "0.05"}, {1e-9, "0.0E+00", "1.0E-09"}, {150, "#,##0.##", "150."}, {12, "0", "12"}} {
+	}{{17200, "#,##0.00", "17,200.00"}, {-1234567.8, "#,##0", "-1,234,568"}, {0.05, "General", "0.05"}, {1e-9, "0.0E+00", "1.0E-09"}, {150, "#,##0.##", "150."}, {12, "0", "12"}, {-4.5, numberOrWords("0.00"), "-4.50"}} {
 		if got := numberShown(t, c.v, c.format); got != c.want {
 			t.Errorf("%g as %s is %s, want %s", c.v, c.format, got, c.want)
 		}

@@ -35,6 +35,9 @@ func formatFor(values ...float64) string {
 // promise more.
 const twoFigures = "[>=9.95]#,##0;[>=0.995]0.0;0.00#"
 
+// numberOrWords is a number format for cells that hold words where there is no number.
+func numberOrWords(format string) string { return format + ";-" + format + ";" + format + ";@" }
+
 func allWhole(values []float64) bool {
 	for _, v := range values {
 		if v != math.Trunc(v) {

@@ -1,6 +1,11 @@
 package workbook
 
-import "github.com/xuri/excelize/v2"
+import (
+	"cmp"
+	"strings"
+
+	"github.com/xuri/excelize/v2"
+)
 
 // look is the appearance of a cell and, with it, the cell's meaning.
 type look uint8
@@ -90,8 +95,8 @@ func (s styled) style() *excelize.Style {
 			st.Border = append(st.Border, excelize.Border{Type: side, Color: rule, Style: 1})
 		}
 	}
-	if s.format != "" {
-		st.CustomNumFmt = &s.format
+	if format := s.set(); format != "" {
+		st.CustomNumFmt = &format
 	}
 	switch s.look {
 	case title, purpose, block, link, message:
@@ -101,8 +106,23 @@ func (s styled) style() *excelize.Style {
 	if s.number {
 		st.Alignment.Horizontal = "right"
 		st.Alignment.WrapText = s.look == heading
+		if s.look != heading {
+			st.Alignment.Indent = 0
+		}
 	}
 	return st
+}
+
+// edge leaves the width of a letter free at the right of a number, as much as an indent of
+// one. Some readers lose the indent of a number beside one that differs in its format alone.
+const edge = "_W"
+
+// set is the number format as it is written, each of its sections with the edge.
+func (s styled) set() string {
+	if !s.number || s.look == heading {
+		return s.format
+	}
+	return strings.ReplaceAll(cmp.Or(s.format, "General"), ";", edge+";") + edge
 }
 
 // overlay is what a conditional format changes.
