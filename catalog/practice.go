@@ -83,6 +83,9 @@ var practiceKeys = map[string]quantity.Dimension{
 	"site-humidity":         quantity.Share,
 	"site-attended-per-day": quantity.Time,
 	"site-peroxide-limit":   quantity.MassConcentration,
+	"peroxide-reading-a":    quantity.Time,
+	"peroxide-reading-b":    quantity.Time,
+	"peroxide-reading-d":    quantity.Time,
 }
 
 func (s *shelf) readPractice() {
@@ -123,4 +126,13 @@ func (s *shelf) molarVolume(n *document.Node) Value {
 		f.Get("value").Fail("%q is more than 10 %% from the molar volume of liquid water, 18.07 cm3/mol", v.Text)
 	}
 	return v
+}
+
+// PeroxideReading is how long (s) a reading counts of a solvent of a class of peroxide
+// formers; of a class without a figure of its own as long as of the worst.
+func (c *Catalog) PeroxideReading(class string) Value {
+	if v, ok := c.Practice["peroxide-reading-"+strings.ToLower(class)]; ok {
+		return v
+	}
+	return c.Practice["peroxide-reading-a"]
 }

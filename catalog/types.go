@@ -106,6 +106,9 @@ type Hazards struct {
 	Origin                // of the peroxide class
 }
 
+// FormsPeroxides reports whether the solvent is held to form peroxides.
+func (h Hazards) FormsPeroxides() bool { return h.PeroxideClass != "" && h.PeroxideClass != "none" }
+
 // Fact is a statement in words and its origin.
 type Fact struct {
 	What, Text string

@@ -72,7 +72,7 @@ func peroxidesOfCarrier(k *routes.Case, q *Question) error {
 	}
 	h, limit := q.Carrier.Hazards, k.Job.Site.PeroxideLimitKgPerM3
 	switch {
-	case h.PeroxideClass == "none" || h.PeroxideClass == "":
+	case !h.FormsPeroxides():
 		return nil
 	case !given(q.PeroxideKgPerM3):
 		return &Refusal{

@@ -108,14 +108,15 @@ func (r *reader) means(n *document.Node, f document.Fields, lot *Lot) {
 	r.history(n, f.Get("sieve history"), lot)
 }
 
-// peroxide reads a test result: the reading counts only with its date.
+// peroxide reads a test result: the reading counts only with its date, which is not after
+// that of the job.
 func (r *reader) peroxide(n *document.Node, lot *Lot) {
 	if n == nil {
 		return
 	}
 	f := n.Map("reading", "date")
 	reading, ok := r.measure(f.Need("reading"), quantity.MassConcentration, between(0, 10, "0 mg/L to 10000 mg/L"))
-	date := f.Need("date").Date()
+	date := r.dated(f.Need("date"))
 	if ok && date != "" {
 		lot.Peroxide = &Peroxide{ReadingKgPerM3: reading, Date: date}
 	}

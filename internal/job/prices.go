@@ -112,7 +112,7 @@ func (r *reader) price(n *document.Node) (own Price, ok bool) {
 	f := n.Map(append(slices.Clone(priceKeys), "currency")...)
 	itemNode, priceNode := f.Need("item"), f.Need("price")
 	own = Price{Line: n.Line(), Terms: r.terms(f)}
-	own.Date = r.priceDate(f.Get("date"))
+	own.Date = r.dated(f.Get("date"))
 	if last := own.ValidUntil; last != "" && last < own.Date {
 		f.Get("valid until").Fail("%s is before the date of the price, %s", quantity.Quote(last), own.Date)
 	}
@@ -263,9 +263,9 @@ func (r *reader) pricedItems() []string {
 	return slices.Sorted(maps.Keys(items))
 }
 
-// priceDate reads the date of a price. Without a date of the job the catalog's
+// dated reads the date of a price or a reading. Without a date of the job the catalog's
 // serves to notice a slip of the pen.
-func (r *reader) priceDate(n *document.Node) string {
+func (r *reader) dated(n *document.Node) string {
 	date := r.pastDate(n)
 	if date != "" && r.job.Date == "" && yearsAfter(r.cat.Date, date) > 1 {
 		r.note(n, "%s is more than a year after the catalog (%s); give the job a date to have it checked", quantity.Quote(date), r.cat.Date)

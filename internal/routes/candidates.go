@@ -143,23 +143,6 @@ func (c *Case) refuseTrap() (reason, source string) {
 	return "", ""
 }
 
-// refuseHeating holds back every heated route of a peroxide former that has no
-// reading under the site's limit.
-func (c *Case) refuseHeating() (reason, source string) {
-	h := c.Solvent.Hazards
-	if h.PeroxideClass == "none" || h.PeroxideClass == "" {
-		return "", ""
-	}
-	limit := c.Job.Site.PeroxideLimitKgPerM3
-	switch p := c.Lot.Peroxide; {
-	case p == nil:
-		return fmt.Sprintf("test first: %s forms peroxides (class %s) and the job gives no peroxide reading", c.Solvent.Name, h.PeroxideClass), h.Source
-	case p.ReadingKgPerM3 > 0 && p.ReadingKgPerM3 >= limit:
-		return fmt.Sprintf("not heated: the peroxide reading of %.3g mg/L (%s) is not under the site's limit of %.3g mg/L", p.ReadingKgPerM3*1e3, p.Date, limit*1e3), h.Source
-	}
-	return "", ""
-}
-
 // leastExcess is how far above saturation a lot without declared free water must
 // lie before settling is offered: the solubility is not known better.
 const leastExcess = 1.02

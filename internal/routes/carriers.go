@@ -66,7 +66,7 @@ func (c *Case) refuseCarrier(key string) (reason, source string) {
 	if carrier.ByName && !c.CarrierAccepted(key) {
 		return carrier.Reason + ": name it under accept: carriers", carrier.Source
 	}
-	if h := c.Catalog.Solvents[key].Hazards; h.PeroxideClass != "none" && h.PeroxideClass != "" && !c.CarrierAccepted(key) {
+	if h := c.Catalog.Solvents[key].Hazards; h.FormsPeroxides() && !c.CarrierAccepted(key) {
 		return fmt.Sprintf("test first: %s forms peroxides (class %s); name it under accept: carriers once it is tested", key, h.PeroxideClass), h.Source
 	}
 	if reason, source = c.refuseHeating(); reason != "" {

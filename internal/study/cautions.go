@@ -81,7 +81,7 @@ func ownCaution(c catalog.Caution) catalog.Caution {
 func applies(c catalog.Caution, k *routes.Case, r routes.Route) bool {
 	h := k.Solvent.Hazards
 	switch {
-	case c.Peroxide && (h.PeroxideClass == "none" || h.PeroxideClass == ""):
+	case c.Peroxide && !h.FormsPeroxides():
 		return false
 	case c.Flammable && k.Solvent.FlashPoint == nil && !k.Solvent.Own: // an own solvent is held to burn
 		return false

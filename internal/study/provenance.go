@@ -54,6 +54,9 @@ func gather(r *Report, c *catalog.Catalog) *shelf {
 			}
 		}
 		p.history(&l.Job)
+		if h := l.Solvent.Hazards; l.Job.Peroxide != nil && h.FormsPeroxides() {
+			p.value("peroxide reading of class "+h.PeroxideClass+" counts for", c.PeroxideReading(h.PeroxideClass))
+		}
 	}
 	for _, key := range slices.Sorted(maps.Keys(c.Practice)) {
 		if appliesTo(key, kinds) {

@@ -28,8 +28,12 @@ func lotWarnings(k *routes.Case) []string {
 	if band := k.Solvent.Water.SolubilityBand; band > 1.2 {
 		add("published solubilities of water in %s scatter by a factor of %.3g: trap floors share that band", k.Solvent.Name, band)
 	}
-	if p := k.Lot.Peroxide; p != nil && k.Solvent.Hazards.PeroxideClass != "none" {
-		add("the peroxide reading is of %s: test again before the lot is heated or has stood", p.Date)
+	switch p := k.Lot.Peroxide; {
+	case p == nil || !k.Solvent.Hazards.FormsPeroxides():
+	case k.ReadingTooOld():
+		add("the peroxide reading is of %s, too old to heat the lot by: %s", p.Date, k.ReadingCounts())
+	default:
+		add("the peroxide reading is of %s; %s: test again before the lot is heated or has stood", p.Date, k.ReadingCounts())
 	}
 	if k.Lot.Water < k.Assay.DetectionLimit {
 		add("the start of %s lies below the detection limit of %s", quantity.FormatWater(k.Lot.Water), quantity.FormatWater(k.Assay.DetectionLimit))
