@@ -38,7 +38,9 @@ func (r *reader) carrier() {
 			r.q.Carrier = s
 		}
 	}
-	switch {
+	switch wrong := r.cat.MistypedCAS(typed); {
+	case r.q.Carrier == nil && wrong != "":
+		r.mistake("--carrier: "+wrong, "")
 	case r.q.Carrier == nil:
 		hint := "carriers: " + strings.Join(carriers, ", ")
 		if near := document.Nearest(typed, carriers); len(near) > 0 {

@@ -122,6 +122,9 @@ func findEntry(cat *catalog.Catalog, kind listing.Kind, typed string) (listing.E
 			return entry, nil
 		}
 	}
+	if wrong := cat.MistypedCAS(typed); wrong != "" && (kind.Name == "solvents" || kind.Name == "carriers") {
+		return listing.Entry{}, misused(wrong, "")
+	}
 	hint := "parch catalog " + kind.Name + " lists the keys"
 	if near := document.Nearest(typed, kind.Keys()); len(near) > 0 {
 		hint = fmt.Sprintf("did you mean %s?", near[0])

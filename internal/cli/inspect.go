@@ -87,6 +87,9 @@ func findCarrier(c *cli.Context, cat *catalog.Catalog, solvent *catalog.Solvent)
 		}
 		return carrier.Key, nil
 	}
+	if wrong := cat.MistypedCAS(typed); wrong != "" {
+		return "", misused("--carrier: "+wrong, "")
+	}
 	carriers := slices.Sorted(maps.Keys(cat.Carriers))
 	hint := "carriers: " + strings.Join(carriers, ", ")
 	if near := document.Nearest(typed, carriers); len(near) > 0 && err != nil {
@@ -107,6 +110,9 @@ func findSolvent(cat *catalog.Catalog, name string) (*catalog.Solvent, error) {
 			return s, nil
 		}
 		known = append(known, s.Words()...)
+	}
+	if wrong := cat.MistypedCAS(name); wrong != "" {
+		return nil, misused(wrong, "")
 	}
 	hint := "solvents: " + strings.Join(solventKeys(cat), ", ")
 	if near := document.Nearest(name, known); len(near) > 0 {

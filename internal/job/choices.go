@@ -205,6 +205,10 @@ func (r *reader) solvent(n *document.Node) *catalog.Solvent {
 			known = append(known, s.Words()...)
 		}
 	}
+	if wrong := r.cat.MistypedCAS(typed); wrong != "" {
+		n.Fail("%s", wrong)
+		return nil
+	}
 	offer := n.Offer(typed, known)
 	if offer == "" {
 		offer = "; solvents: " + strings.Join(r.solventKeys(), ", ")
