@@ -45,6 +45,7 @@ func (n *Node) Map(allowed ...string) Fields {
 	if !n.holds(keyed) {
 		return fields
 	}
+	n.mend(allowed)
 	fields.known = make([]*Node, 0, len(n.inside))
 	for _, value := range n.inside {
 		if slices.Contains(allowed, value.key) {

@@ -217,6 +217,16 @@ func (r *reader) solvent(n *document.Node) *catalog.Solvent {
 	return nil
 }
 
+// solventKey is the key of the solvent that goes by a name, or "".
+func (r *reader) solventKey(name string) string {
+	for _, key := range r.solventKeys() {
+		if r.cat.Solvents[key].IsCalled(name) {
+			return key
+		}
+	}
+	return ""
+}
+
 func (r *reader) solventKeys() []string {
 	var keys []string
 	for _, key := range slices.Sorted(maps.Keys(r.cat.Solvents)) {

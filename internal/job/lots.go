@@ -27,6 +27,7 @@ func (r *reader) lots(n *document.Node) {
 
 // lot reads one lot; lines remembers the names that are taken.
 func (r *reader) lot(n *document.Node, lines map[string]int) Lot {
+	n.Known("solvent", r.solventKey)
 	f := n.Map("name", "solvent", "batch", "batches", "water", "free water", "target", "not below", "needed within", "litres per week",
 		"peroxide", "heater", "sieve history", "vessel height", "reclaimed", "failed batch")
 	lot := Lot{Line: n.Line(), Reclaimed: f.Get("reclaimed").Bool()}
