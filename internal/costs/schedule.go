@@ -122,33 +122,62 @@ func (p *purchaser) itemLimit(one *Purchase) (limit float64, ok bool) {
 	return 0, false
 }
 
+// stored is what is in store of the items under one limit.
+type stored struct {
+	peak, onHand float64 // in kg or L
+	ordered      bool
+}
+
 // storageFlags compares what is in store at most, if all items are at their most
 // together, with the limits of the site.
 func (p *purchaser) storageFlags(all []Purchase) []string {
 	var flags []string
 	for _, limit := range p.job.Storage {
-		kg, litres, volume := 0.0, 0.0, true
+		var kg, litres stored
+		volume := true
 		for i := range all {
 			one := &all[i]
 			if one.Item != limit.Item && !p.inClass(one.Item, limit.Class) || one.KgPerUnit == 0 {
 				continue
 			}
-			kg += one.Peak * one.KgPerUnit
-			litres += one.Peak
+			kg.add(one, one.KgPerUnit)
+			litres.add(one, 1)
 			volume = volume && one.Unit == "litre"
 		}
 		what := limit.Item + limit.Class
-		const note = "lots that wait and waste come on top; the site's limit and the local fire code decide"
 		switch {
 		case limit.M3 > 0 && !volume:
 			flags = append(flags, fmt.Sprintf("%s: the limit is a volume, but some of it is weighed; give the limit in kg", what))
-		case limit.M3 > 0 && litres > limit.M3*1e3*(1+1e-9):
-			flags = append(flags, fmt.Sprintf("%s: up to %.4g L in store at once, the limit is %.4g L: order less at a time; %s", what, litres, limit.M3*1e3, note))
-		case limit.Kg > 0 && kg > limit.Kg*(1+1e-9):
-			flags = append(flags, fmt.Sprintf("%s: up to %.4g kg in store at once, the limit is %.4g kg: order less at a time; %s", what, kg, limit.Kg, note))
+		case limit.M3 > 0:
+			flags = litres.flag(flags, what, "L", limit.M3*1e3)
+		case limit.Kg > 0:
+			flags = kg.flag(flags, what, "kg", limit.Kg)
 		}
 	}
 	return flags
+}
+
+func (s *stored) add(one *Purchase, perUnit float64) {
+	s.peak += one.Peak * perUnit
+	s.onHand += one.Have * perUnit
+	s.ordered = s.ordered || one.ToBuy > 0
+}
+
+// flag says where what is in store passes a limit, and what would help.
+func (s *stored) flag(flags []string, what, unit string, limit float64) []string {
+	const rounding = 1 + 1e-9
+	if s.peak <= limit*rounding {
+		return flags
+	}
+	advice := "order less at a time"
+	switch {
+	case !s.ordered:
+		advice = "all of it is on hand and none is ordered, so keep less here"
+	case s.onHand > limit*rounding:
+		advice = fmt.Sprintf("%.4g %s of it are on hand, over the limit before anything is ordered, so keep less here", s.onHand, unit)
+	}
+	return append(flags, fmt.Sprintf("%s: up to %.4g %s in store at once, the limit is %.4g %s: %s; lots that wait and waste come on top; the site's limit and the local fire code decide",
+		what, s.peak, unit, limit, unit, advice))
 }
 
 // inClass tells whether an item counts towards a class of the site's limits.

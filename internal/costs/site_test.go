@@ -344,3 +344,27 @@ func TestMissingPricesAreNamed(t *testing.T) {
 		t.Errorf("%s without a price for %v, %v", bill.PerBatch, bill.NoPrice, err) // 171.62 - 44.40 - 6.20
 	}
 }
+
+// Of what is over a limit of the site by what is on hand, nobody is told to order less:
+// 500 kg are there, a year takes 20, the limit is 10 kg.
+func TestStorageFlagsOfWhatIsOnHand(t *testing.T) {
+	flag := func(onHandKg, safetyKg, yearKg, limitKg float64) string {
+		j := &job.Job{Currency: "EUR", Date: "2026-12-01", Prices: []job.Price{own("sieve-3a", "kg", "4", "60", "2026-10-01", job.Terms{})},
+			Storage: []job.StorageLimit{{Item: "sieve-3a", Kg: limitKg}}, Stock: []job.Stock{{Item: "sieve-3a", OnHandKg: onHandKg, SafetyKg: safetyKg}}}
+		return strings.Join(buy(t, j, costs.Need{Item: "sieve-3a", Unit: "kg", Process: yearKg, AtOnce: 1, LaterYears: yearKg}).Flags, "|")
+	}
+	const note = "; lots that wait and waste come on top; the site's limit and the local fire code decide"
+	for _, c := range []struct {
+		onHandKg, safetyKg, yearKg, limitKg float64
+		want                                string
+	}{
+		{500, 0, 20, 10, "sieve-3a: up to 500 kg in store at once, the limit is 10 kg: all of it is on hand and none is ordered, so keep less here" + note},
+		{15, 2, 30, 10, "sieve-3a: up to 15 kg in store at once, the limit is 10 kg: 15 kg of it are on hand, over the limit before anything is ordered, so keep less here" + note},
+		{2, 2, 3, 5.5, "sieve-3a: up to 6 kg in store at once, the limit is 5.5 kg: order less at a time" + note},
+		{5, 0, 3, 10, ""},
+	} {
+		if got := flag(c.onHandKg, c.safetyKg, c.yearKg, c.limitKg); got != c.want {
+			t.Errorf("%g kg on hand, %g a year, a limit of %g kg:\n got %s\nwant %s", c.onHandKg, c.yearKg, c.limitKg, got, c.want)
+		}
+	}
+}
