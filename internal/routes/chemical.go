@@ -73,6 +73,9 @@ func (c *Case) measured(a *catalog.Agent) steps.Measured {
 	return steps.Measured{}
 }
 
+// IsMeasured reports whether a residual of a reactive agent is known in this solvent.
+func (c *Case) IsMeasured(agent string) bool { return c.measured(c.Catalog.Agents[agent]).Water > 0 }
+
 // onlyWhenAsked is computed only where the job accepts it by name: it is never
 // the preferred agent.
 const onlyWhenAsked = "sodium"

@@ -139,13 +139,13 @@ func (a ReactiveAgent) residual(m *thermo.Mixture, feed Lot, found Measured, rig
 		}
 		r.text = fmt.Sprintf("class floor: no measurement for %s in %s; agents of its kind leave a water activity near %.2g, here %s, %s to %s",
 			a.called(), m.Solvent.Called(), a.ClassActivity, quantity.FormatWater(r.water), quantity.FormatWater(r.low), quantity.FormatWater(r.high))
-		r.unmeasured = fmt.Sprintf("nothing was measured for %s in %s: it may leave anything between %s and %s, which is the band of its class; the figure shown is no measurement",
-			a.called(), m.Solvent.Called(), quantity.FormatWater(r.low), quantity.FormatWater(r.high))
 	}
-	if found.Water == 0 && r.water < a.LowestOutlet {
-		r.why = AtPractice
+	if found.Water == 0 && r.low < a.LowestOutlet {
+		if r.water < a.LowestOutlet {
+			r.why = AtPractice
+		}
 		r.text += fmt.Sprintf("; droplets and moist air keep a distillate at %s or more", quantity.FormatWater(a.LowestOutlet))
-		r.water, r.high = a.LowestOutlet, math.Max(r.high, a.LowestOutlet)
+		r.low, r.water, r.high = math.Max(r.low, a.LowestOutlet), math.Max(r.water, a.LowestOutlet), math.Max(r.high, a.LowestOutlet)
 	}
 	if rig.RefluxS < a.LeastRefluxS {
 		r.water = r.high
@@ -159,7 +159,19 @@ func (a ReactiveAgent) residual(m *thermo.Mixture, feed Lot, found Measured, rig
 		}
 	}
 	r.low, r.high = math.Min(r.low, feed.Water()), math.Min(r.high, feed.Water())
+	if found.Water == 0 {
+		r.unmeasured = fmt.Sprintf("nothing was measured for %s in %s: %s; the figure shown is no measurement", a.called(), m.Solvent.Called(), r.mayLeave())
+	}
 	return r, nil
+}
+
+// mayLeave says within what an agent leaves a lot of which only its class is known.
+func (r residual) mayLeave() string {
+	low, high := quantity.FormatWater(r.low), quantity.FormatWater(r.high)
+	if low == high {
+		return fmt.Sprintf("no less than %s is claimed, whatever its class may do", low)
+	}
+	return fmt.Sprintf("it may leave anything between %s and %s of this lot, which is the band of its class", low, high)
 }
 
 func (a ReactiveAgent) check(feed Lot, solvent string, rig ReactiveRig) error {

@@ -85,10 +85,7 @@ func runWarnings(k *routes.Case, run routes.Run) []string {
 		case steps.Salt:
 			add("a salt is claimed to take the share of water that it took from ether when it was measured, whatever its equilibrium says")
 		case steps.Reactive:
-			if o.Why == steps.AtFloor || o.Why == steps.AtPractice {
-				add("nothing measured for %s in %s: agents of its kind leave %s to %s", o.Agent, k.Solvent.Name,
-					quantity.FormatWater(o.Figure("residual, low")*1e-6), quantity.FormatWater(o.Figure("residual, high")*1e-6))
-			} else {
+			if k.IsMeasured(o.Agent) { // else the step says so
 				add("the residual of %s in %s is one published or recalled figure, from its own dose and time", o.Agent, k.Solvent.Name)
 			}
 		case steps.Buy:
