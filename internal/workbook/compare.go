@@ -31,14 +31,17 @@ func (l *layout) compare() *grid {
 }
 
 func (l *layout) compareBlock(g *grid) {
-	units := frameRows + 1
+	units := frameRows + 2
 	first := g.table(units, "", []column{{name: "Lot"}, {name: "Route id"}, {name: "Reaches target"}, {"Water out", "mg/kg"},
 		{"Hours attended", "h"}, {"Cost per batch", "1"}, {"Cost per litre", "1"}, {"Rank", "1"}, {"Hours total", "h"}, {"Energy", "kWh"}, {"Waste", "kg"},
 		{"Litres delivered", "L"}, {"Cost per year", l.currency()}, {"Emissions", "kg CO2e"}, {"Accept at", "mg/kg"}, {"Target", "mg/kg"},
 		{name: "State"}, {"Water left, as drawn", "mg/kg"}})
 	g.put(1, units, text(block, "Routes"))
-	g.put(compareBatch, units, text(plain, l.currency()))
-	g.put(compareLitre, units, text(plain, l.money("L")))
+	for column, unit := range map[int]string{compareBatch: l.currency(), compareLitre: l.money("L")} {
+		over := text(plain, unit).shown(numberOrWords("0")) // at the right, as the numbers are
+		over.right = true
+		g.put(column, units, over)
+	}
 	g.mixed, g.frozenRows, g.frozenColumns = true, first-1, 2
 	l.compareRows = rows{first, first + len(l.routes) - 1}
 	for i := range l.routes {

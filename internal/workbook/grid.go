@@ -100,8 +100,10 @@ type grid struct {
 	frozenRows    int
 	frozenColumns int
 	mixed         bool // blocks with different columns follow each other
+	bannerRows    int  // rows below the top that name the run
 	printColumns  int
 	printed       []rows // what is printed; all rows where there is none
+	heads         rows   // of the only block that is printed: its name and its headings
 	portrait      bool
 	onePage       bool // the whole sheet on one printed page
 	percent       int  // scale of printing; 0: as wide as the page
@@ -109,6 +111,7 @@ type grid struct {
 	flags         []flag
 	charts        []placed
 	merged        []merge
+	flows         bool  // parts run on over pages as soon as they begin on one
 	parts         []int // rows at which parts start that are to stay on one printed page
 	breaks        []int // rows that start a printed page
 	links         []jump

@@ -87,7 +87,7 @@ func TestCostsArePrintedTogether(t *testing.T) {
 	}
 	l := lay(m)
 	for _, g := range l.grids {
-		if g.name == sheetCosts && (len(g.printed) != 1 || g.printed[0].first != l.headRows.first-2 || g.printed[0].last != l.rankRows.last || len(g.breaks) > 0) {
+		if g.name == sheetCosts && (len(g.printed) != 1 || g.printed[0].first != l.headRows.first-3 || g.printed[0].last != l.rankRows.last || len(g.breaks) > 0) {
 			t.Errorf("printed %v in pages from %v", g.printed, g.breaks)
 		}
 	}
@@ -129,6 +129,33 @@ func TestRepeatedHeadingsStandOnce(t *testing.T) {
 					t.Errorf("%s: row %d of %s holds headings that stand on top of its page already", k.name, r+1, g.name)
 				}
 			}
+		}
+	}
+}
+
+// Each page of Read me begins with a list, none is cut: a list of lots that is longer than
+// a page apart.
+func TestReadMeCutsNoList(t *testing.T) {
+	for _, k := range everyKind(t) {
+		if len(k.layout.lots) > mostLotsDrawn {
+			continue
+		}
+		g := k.layout.grids[0]
+		page, titles := g.pageRoom()
+		used := titles
+		for row := frameRows + 2; row <= g.last(); row++ {
+			if slices.Contains(g.breaks, row) {
+				if !named(g, row) && !named(g, row+1) {
+					t.Errorf("%s: row %d starts a page", k.name, row)
+				}
+				used = titles
+			}
+			if used += g.span(row, row); used > page {
+				t.Errorf("%s: row %d does not fit on its page", k.name, row)
+			}
+		}
+		if len(g.breaks) > 1 {
+			t.Errorf("%s: pages start at %v", k.name, g.breaks)
 		}
 	}
 }

@@ -82,14 +82,31 @@ func (e *emitter) printRange(g *grid) error {
 	return nil
 }
 
-// titles are the rows repeated on each printed page: the headings of a sheet with
-// one set of columns, else the top of the sheet.
+// titles are the rows repeated on each printed page: the headings of a sheet that prints
+// one set of columns, else the top of the sheet with the run that it belongs to, or with
+// the row below if that is blank.
 func (g *grid) titles() (first, last int) {
-	if g.mixed {
-		return 1, frameRows
+	switch {
+	case g.heads.last > 0:
+		return g.heads.first, g.heads.last
+	case !g.mixed:
+		return g.frozenRows, g.frozenRows
+	case g.bannerRows > 0:
+		return 1, frameRows + g.bannerRows
+	case g.blankRow(frameRows + 1):
+		return 1, frameRows + 1
 	}
-	return g.frozenRows, g.frozenRows
+	return 1, frameRows
 }
+
+// free reports whether a page begins with a row that is left free: the last of a banner is,
+// as long as nothing is edited.
+func (g *grid) free() bool {
+	_, last := g.titles()
+	return g.mixed && last > frameRows
+}
+
+func (g *grid) blankRow(row int) bool { return row <= len(g.rows) && len(g.rows[row-1]) == 0 }
 
 // protect guards against slips: only inputs can be edited. There is no password.
 func (e *emitter) protect(g *grid) error {

@@ -3,14 +3,14 @@ package workbook
 // part marks the row at which a part starts that is to stay on one printed page.
 func (g *grid) part(row int) { g.parts = append(g.parts, row) }
 
-// mostUsed is the share of a page above which a part that is longer than a page starts
-// the next one.
+// mostUsed is the share of a page above which a part that runs on starts the next one.
 const mostUsed = 0.7
 
 // paginate sets the page breaks of a sheet with parts. A part stays on the page of the one
-// before if it fits there, else it starts a page. A part that is longer than a page runs
-// on, and is broken where the least that a page holds is full: readers differ in what it
-// holds, and would differ in what follows. The last part is left to the reader.
+// before if it fits there, else it starts a page. A part that is longer than a page, and
+// each of a sheet that flows, runs on, and is broken where the least that a page holds is
+// full: readers differ in what it holds, and would differ in what follows. The last part is
+// left to the reader.
 func (g *grid) paginate() {
 	if len(g.parts) == 0 {
 		return
@@ -30,12 +30,17 @@ func (g *grid) paginate() {
 			whole := used+rowPoints+g.chartsWithin(start, end) <= page*chartFilled/pageFilled
 			fits := used+rowPoints+g.span(start, end) <= page && whole
 			long := titles+rowPoints+g.span(start, end) > page
-			runsOn := long && used < mostUsed*page && whole
-			if !fits && !runsOn {
-				g.breaks = append(g.breaks, start-1) // the blank row leads the page
+			runsOn := (long || g.flows) && used < mostUsed*page && whole
+			switch {
+			case fits || runsOn:
+				used += rowPoints
+			case !g.free() || used+rowPoints > page: // the blank row leads the page
+				g.breaks = append(g.breaks, start-1)
+				used = titles + rowPoints
+			default:
+				g.breaks = append(g.breaks, start)
 				used = titles
 			}
-			used += rowPoints
 		}
 		if i+1 == len(starts) && g.chartsWithin(start, end) == 0 {
 			break

@@ -6,15 +6,15 @@ const curvesPrinted = 40
 // workPages are the rows that the working sheets print: the blocks with a row for
 // each step or route, not what they are computed from.
 func (l *layout) workPages() {
-	withHeading := func(first, last rows) []rows { return []rows{{first.first - 2, last.last}} } // its name and its columns
 	for _, g := range l.grids {
 		switch {
 		case g.name == sheetCurves:
 			g.printed = []rows{{1, min(g.last(), curvesPrinted)}}
 		case g.name == sheetSteps && !l.flowRows.empty():
-			g.printed = withHeading(l.flowRows, l.flowRows)
+			g.heads = rows{l.flowRows.first - 2, l.flowRows.first - 1}
+			g.printed = []rows{{g.heads.first, l.flowRows.last}}
 		case g.name == sheetCosts && !l.headRows.empty():
-			g.printed = withHeading(l.headRows, l.rankRows) // one area: each starts a page
+			g.printed = []rows{{l.headRows.first - 3, l.rankRows.last}} // from the blank row above; one area: each starts a page
 		}
 	}
 }

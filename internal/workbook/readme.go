@@ -61,12 +61,12 @@ var lookWords = []struct {
 }
 
 func (l *layout) readMe() *grid {
-	g := newGrid(sheetReadMe, "Ways to dry a bulk solvent, compared: "+oneLine(l.report.Job.Title), tabText, checkCell(), 26, 120)
+	g := newGrid(sheetReadMe, "Ways to dry a bulk solvent, compared: "+oneLine(l.report.Job.Title), tabText, checkCell(), 22, 134)
 	g.put(1, 3, text(plain, "Checks"))
 	g.links = nil // this is where the others lead to
 	g.mixed, g.frozenRows = true, frameRows
 	g.section("What it is")
-	g.say(text(plain, "parch"), "Computes how a bulk solvent can be dried by chains of steps, what each chain costs and how sure that is, and ranks the chains. This workbook is its answer for the job named below.")
+	g.say(text(plain, "parch"), "Computes how a bulk solvent can be dried by chains of steps, what each costs and how sure that is, and ranks them: here for the job below.")
 	g.section("Cautions")
 	g.numbered(cautionWords)
 	l.thisRun(g)
@@ -86,7 +86,13 @@ func (l *layout) readMe() *grid {
 	return g
 }
 
-func (g *grid) section(name string) { g.put(1, g.next(), text(block, name)) }
+// section starts a list that stays on one page.
+func (g *grid) section(name string) {
+	if row := g.next(); row > frameRows+2 {
+		g.part(row)
+	}
+	g.put(1, g.next(), text(block, name))
+}
 
 func (g *grid) say(a cell, b string) { g.putRow(g.last()+1, a, text(words, oneLine(b))) }
 

@@ -20,6 +20,7 @@ func (l *layout) runDate() string {
 // it has to be repeated as soon as anything is edited.
 func (l *layout) banner(g *grid, row int) {
 	state := fmt.Sprintf(`IF(%s>0,"Edited since: %s","")`, changedName, runAgain)
+	g.bannerRows = 2
 	g.put(1, row, text(plain, l.ofRun()))
 	g.put(1, row+1, cell{look: message, formula: state, value: ""})
 	g.flags = append(g.flags, flag{at(1, row+1), fmt.Sprintf("LEN($A%d)>0", row+1), warn})
