@@ -8,9 +8,12 @@ import (
 	"strings"
 )
 
-// mostListed is how many characters a list of routes takes: hundreds of chains fall to
-// the same reason, and a cell that names them all would be higher than a row can be.
+// mostListed is how many characters a list of routes takes that a text is for: hundreds
+// of chains may share one, and a cell that names them all would be higher than a row can be.
 const mostListed = 900
+
+// mostNotOffered is how many characters a list of routes that are not offered takes.
+const mostNotOffered = 300
 
 // listed names routes as far as a number of characters has room for and counts the rest.
 func listed(ids []string, room int) string {
@@ -35,7 +38,7 @@ func (l *layout) excludedBlock(g *grid) {
 			if row == 0 {
 				row = l.listBlock(g, "Not offered, and why; what a long list leaves out, the JSON of the run names", "Lot", "Routes", "Reason and source")
 			}
-			g.entry(row, words, lot.Job.Name, listed(e.ids, mostListed), e.reason())
+			g.entry(row, words, lot.Job.Name, listed(e.ids, mostNotOffered), e.reason())
 			row++
 		}
 	}

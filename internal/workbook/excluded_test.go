@@ -45,3 +45,41 @@ func TestLongListsAreCounted(t *testing.T) {
 		t.Error("the one route is not named")
 	}
 }
+
+// A row of a list is as high as its texts: the routes stand in lines of their own, each as
+// full as it gets, which no reader has to break again.
+func TestListsAreAsHighAsTheirText(t *testing.T) {
+	for _, k := range everyKind(t) {
+		g := k.layout.gridOf(sheetCompare)
+		size, lists := paints[words].size, 0
+		for r, row := range g.rows {
+			if len(row) < listText || row[0].look != words || row[listText-1].look != words {
+				continue
+			}
+			routes, _ := row[listRoutes-1].value.(string)
+			reason, _ := row[listText-1].value.(string)
+			if routes == "" || reason == "" {
+				continue
+			}
+			lists++
+			room := g.roomFor(listRoutes, r+1)
+			lines := strings.Split(routes, "\n")
+			for i, line := range lines {
+				if widthOf(line, size, false) > room {
+					t.Errorf("%s: row %d of Compare: %q is wider than its room", k.name, r+1, line)
+				}
+				if next, _, _ := strings.Cut(lines[min(i+1, len(lines)-1)], " "); i+1 < len(lines) && strings.HasSuffix(line, ",") && widthOf(line+" "+next, size, false) < listSpared*room {
+					t.Errorf("%s: row %d of Compare: %q has room after %q", k.name, r+1, next, line)
+				}
+			}
+			first, _ := row[0].value.(string)
+			want := linesHigh(max(len(lines), wrapped(first, g.roomFor(1, r+1), size, g.mayBeBold(1, r+1)), wrapped(reason, g.roomFor(listText, r+1), size, false)))
+			if got := g.height(r + 1); got != want {
+				t.Errorf("%s: row %d of Compare is %g points high, its text %g", k.name, r+1, got, want)
+			}
+		}
+		if k.name == "demonstration" && lists < 50 {
+			t.Errorf("only %d rows", lists)
+		}
+	}
+}

@@ -66,6 +66,9 @@ const (
 	listText   = 7
 )
 
+// listSpared is the share of its room that a list is laid out in: other typefaces are wider.
+const listSpared = 0.92
+
 // listBlock starts a list of text and returns the row of its first entry.
 func (l *layout) listBlock(g *grid, name, a, b, c string) int {
 	row := max(g.last(), g.drawnTo()) + 2
@@ -78,6 +81,9 @@ func (l *layout) listBlock(g *grid, name, a, b, c string) int {
 func (g *grid) entry(row int, l look, a, b, c string) {
 	g.put(1, row, text(l, oneLine(a)))
 	g.across(listRoutes, listText-1, row, l, b)
+	if l != heading {
+		g.put(listRoutes, row, text(l, lined(b, g.roomFor(listRoutes, row)*listSpared, paints[l].size)))
+	}
 	g.across(listText, g.printColumns, row, l, c)
 }
 
