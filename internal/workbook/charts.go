@@ -93,7 +93,9 @@ func (l *layout) compareCharts(g *grid) {
 		if cost := l.costChart(lot, places); len(cost.Series) > 0 { // nothing has a price in some currencies
 			g.draw(1, row, costWidth, height, fmt.Sprintf("Lot %d: cost", lot.no), cost)
 		}
-		l.alongBlock(g, g.under(placed{row: row, height: height})+3, lot)
+		table := g.under(placed{row: row, height: height}) + 3
+		g.part(table) // the charts stay with the routes where the table has no room
+		l.alongBlock(g, table, lot)
 		g.draw(waterColumn, row, waterWidth, height, fmt.Sprintf("Lot %d: water", lot.no), l.alongChart(lot))
 	}
 	if left := len(l.lots) - mostLotsDrawn; left > 0 {

@@ -34,7 +34,7 @@ func (g *grid) paginate() {
 			switch {
 			case fits || runsOn:
 				used += rowPoints
-			case !g.free() || used+rowPoints > page: // the blank row leads the page
+			case !g.free() || used+rowPoints > page || g.chartsWithin(start, start) > 0: // the blank row leads the page
 				g.breaks = append(g.breaks, start-1)
 				used = titles + rowPoints
 			default:
