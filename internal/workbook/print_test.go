@@ -131,6 +131,25 @@ func TestPagesToSignAndForTheBench(t *testing.T) {
 	books := [][]byte{written(t, demo(t)), small.onLetter(t), written(t, synthetic()), crowd.onLetter(t)}
 	for i, b := range pagesBySheet(t, nil, books...) {
 		checkPages(t, i, b.pages, []int{3, 3, 2, 30}[i])
+		if i == 0 {
+			checkExponents(t, b.pdf, b.first[sheetChecks])
+		}
+	}
+}
+
+// checkExponents looks for tolerances as they are printed: some formats for the space
+// after a number cost its exponent the last digits.
+func checkExponents(t *testing.T, pdf string, page int) {
+	t.Helper()
+	no := fmt.Sprint(page)
+	out, err := exec.CommandContext(t.Context(), outside.Program(t, "pdftotext"), "-layout", "-f", no, "-l", no, pdf, "-").Output()
+	if err != nil {
+		t.Fatal(err)
+	}
+	for _, want := range []string{"0.0E+00 ", "5.0E-03 "} {
+		if !strings.Contains(string(out), want) {
+			t.Errorf("Checks prints no %s", want)
+		}
 	}
 }
 

@@ -1,7 +1,6 @@
 package workbook
 
 import (
-	"cmp"
 	"strings"
 
 	"github.com/xuri/excelize/v2"
@@ -106,23 +105,29 @@ func (s styled) style() *excelize.Style {
 	if s.number {
 		st.Alignment.Horizontal = "right"
 		st.Alignment.WrapText = s.look == heading
-		if s.look != heading {
+		if s.padded() {
 			st.Alignment.Indent = 0
 		}
 	}
 	return st
 }
 
-// edge leaves the width of a letter free at the right of a number, as much as an indent of
-// one. Some readers lose the indent of a number beside one that differs in its format alone.
-const edge = "_W"
+// edge leaves the right of a number free, as much as an indent of one. Some readers lose
+// the indent of a number beside one that differs in its format alone.
+const edge = `"   "`
+
+// padded reports whether the format of a number has the edge. Readers fit the digits of a
+// number without a format to its column only where nothing follows them.
+func (s styled) padded() bool {
+	return s.number && s.look != heading && s.format != "" && s.format != "General"
+}
 
 // set is the number format as it is written, each of its sections with the edge.
 func (s styled) set() string {
-	if !s.number || s.look == heading {
+	if !s.padded() {
 		return s.format
 	}
-	return strings.ReplaceAll(cmp.Or(s.format, "General"), ";", edge+";") + edge
+	return strings.ReplaceAll(s.format, ";", edge+";") + edge
 }
 
 // overlay is what a conditional format changes.

@@ -13,7 +13,7 @@ func TestNumbersKeepClearOfTheEdge(t *testing.T) {
 	for _, g := range layoutOf(t).grids {
 		for _, row := range g.rows {
 			for _, c := range row {
-				if c.isNumber() || (c.right && c.look != heading) {
+				if (c.isNumber() || c.right) && c.look != heading && c.format != "" && c.format != "General" {
 					seen[styled{c.look, c.format, true}] = true
 				}
 			}
@@ -25,7 +25,7 @@ func TestNumbersKeepClearOfTheEdge(t *testing.T) {
 			t.Fatalf("%+v is aligned %+v", s, *st.Alignment)
 		}
 		for _, section := range strings.Split(*st.CustomNumFmt, ";") {
-			if !strings.HasSuffix(section, "_W") {
+			if !strings.HasSuffix(section, `"   "`) {
 				t.Errorf("%+v is written %q", s, *st.CustomNumFmt)
 			}
 		}
