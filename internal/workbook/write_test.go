@@ -76,7 +76,7 @@ func TestTiesAndUnshownTargets(t *testing.T) {
 	}
 	want := [][3]string{{"soak:b", "yes", "2"}, {"soak:a", "yes", "1"}, {"soak:c", "yes", "3"}, {"trap", "no", ""}, {"trap", "no", ""}}
 	for i, w := range want {
-		row := 6 + i
+		row := 7 + i
 		cells := b.cells["Compare"]
 		got := [3]string{cells[at(2, row)].text, cells[at(3, row)].text, cells[at(8, row)].raw}
 		if got != w {
@@ -89,7 +89,7 @@ func TestNoRoutesAtAll(t *testing.T) {
 	r := synthetic()
 	r.Lots = r.Lots[2:]
 	b := readBook(t, written(t, r))
-	if got := b.cells["Compare"]["A6"].text; got != "No route is offered." {
+	if got := b.cells["Compare"]["A7"].text; got != "No route is offered." {
 		t.Errorf("Compare says %q", got)
 	}
 	if _, _, c := b.named(t, "check_total"); c.raw != "0" {
