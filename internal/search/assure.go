@@ -10,7 +10,8 @@ import (
 
 // Assurance is what makes a route sure enough.
 type Assurance struct {
-	Sure func(run *routes.Run) (bool, error) // whether its chance reaches the assurance
+	Sure func(run *routes.Run) (bool, error)    // whether its chance reaches the assurance
+	Miss func(run *routes.Run) (float64, error) // what missing the target is expected to cost, in the objective; nil: nothing
 }
 
 // aimTries are the bisections of ln(aim) between the driest that a step can do and the
@@ -21,27 +22,40 @@ const aimTries = 8
 // tuned so that with everything at its typical value it just ends at the limit, so
 // half of the draws may miss it. Its last step is therefore sized for an aim of its
 // own under the limit, and a last soak may take another stand and serve fewer lots: of all that
-// can be assured the best by the objective, or the shortest of those that are as good, the
-// hand-overs before it kept. Where nothing helps the run comes back as it was.
+// can be assured the best by the objective, or the shortest of those that are as good. The
+// hand-overs before it follow. Where a missed target costs, it is sized for as much more as
+// pays. Where nothing helps the run comes back as it was.
 func (t *Tuner) Assured(r routes.Route, run routes.Run, a Assurance) (routes.Run, error) {
 	sure, err := a.Sure(&run)
-	if err != nil || sure {
+	if err != nil || sure && a.Miss == nil {
+		return run, err
+	}
+	asTuned, err := t.score(&run)
+	if err != nil {
 		return run, err
 	}
 	l := lifting{t: t, route: r, Assurance: a}
-	best := trial{score: math.Inf(1)}
-	if r[len(r)-1].Kind == steps.Soak {
-		best, err = l.soaked(run)
-	} else {
-		start := trial{run: run}
-		if start.score, err = t.score(&run); err == nil {
-			best, err = l.best([]trial{start}, best)
-		}
+	best, err := l.ended(run)
+	if err == nil && best.run.Route != nil {
+		best, err = l.begun(best, asTuned)
 	}
 	if err != nil || best.run.Route == nil {
 		return run, err
 	}
 	return best.run, nil
+}
+
+// ended is the best sure run with the hand-overs of a run; without a route where none is.
+func (l *lifting) ended(run routes.Run) (trial, error) {
+	l.vain = nil
+	if l.route[len(l.route)-1].Kind == steps.Soak {
+		return l.soaked(run)
+	}
+	score, err := l.t.score(&run)
+	if err != nil {
+		return trial{}, err
+	}
+	return l.best([]trial{{run: run, score: score}}, trial{score: math.Inf(1)})
 }
 
 // soaked is the best sure run over the stands of the last soak, each with every number of
@@ -126,8 +140,17 @@ type lifting struct {
 
 // lifted finds the highest aim at which a run is sure enough and scores no more than
 // most. The lower the aim, the surer and the worse: what is not sure at the lowest aim
-// that is good enough is left.
+// that is good enough is left. Where a miss costs, a lower one may pay.
 func (l *lifting) lifted(start trial, most float64) (trial, bool, error) {
+	found, ok, err := l.sure(start, most)
+	if err != nil || !ok || l.Miss == nil {
+		return found, ok, err
+	}
+	found, err = l.insured(start, found)
+	return found, true, err
+}
+
+func (l *lifting) sure(start trial, most float64) (trial, bool, error) {
 	if asIs, err := l.Sure(&start.run); err != nil || asIs {
 		return start, asIs, err
 	}

@@ -146,7 +146,7 @@ func (b *Bounds) Of(branch Branch) []Measures { return b.measures(branch.tolls) 
 
 func (b *Bounds) measures(tolls []toll) (all []Measures) {
 	for _, x := range tolls {
-		all = append(all, Measures{x.money/b.litres + b.perLitre, x.attended, x.wasteKg, x.energyKWh, x.hours})
+		all = append(all, Measures{PerLitre: x.money/b.litres + b.perLitre, Attended: x.attended, WasteKg: x.wasteKg, EnergyKWh: x.energyKWh, Time: x.hours})
 	}
 	return all
 }

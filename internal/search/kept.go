@@ -16,15 +16,21 @@ type Kept struct {
 	Charges        []int   // as in routes.Settings
 	LotsOverCharge []int
 
-	stands []stand // of each soak; 0 h: any
+	stands []stand         // of each soak; 0 h: any
+	beds   map[int]float64 // mg/kg handed over by the soak or column at a place
 }
 
 // KeptOf is what a run on a case with that acceptance limit (kg/kg) has to keep.
 func KeptOf(run *routes.Run, limit float64) Kept {
 	s := run.Settings
-	k := Kept{AimShare: s.AimMgPerKg * 1e-6 / limit, Charges: slices.Clone(s.Charges), LotsOverCharge: slices.Clone(s.LotsOverCharge)}
+	k := Kept{AimShare: s.AimMgPerKg * 1e-6 / limit, Charges: slices.Clone(s.Charges), LotsOverCharge: slices.Clone(s.LotsOverCharge), beds: map[int]float64{}}
 	for i, hours := range s.SoakHours {
 		k.stands = append(k.stands, stand{hours, s.Stirred[i]})
+	}
+	for _, place := range places(run.Route) {
+		if kind := run.Route[place].Kind; kind == steps.Soak || kind == steps.Column {
+			k.beds[place] = s.HandOverMgPerKg[place]
+		}
 	}
 	return k
 }

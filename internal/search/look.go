@@ -164,13 +164,16 @@ func (g *tuning) grid() [][]float64 {
 	grid := [][]float64{nil}
 	for i := range g.places {
 		points := coarsePoints
-		if len(g.places) > 1 {
+		switch {
+		case g.lo[i] == g.hi[i]:
+			points = 1
+		case len(g.places) > 1:
 			points = 4
 		}
 		var next [][]float64
 		for _, head := range grid {
 			for k := range points {
-				u := g.lo[i] + (g.hi[i]-g.lo[i])*float64(k)/float64(points-1)
+				u := g.lo[i] + (g.hi[i]-g.lo[i])*float64(k)/float64(max(1, points-1))
 				if i == 0 || u < head[i-1] {
 					next = append(next, append(append([]float64{}, head...), u))
 				}
@@ -318,7 +321,7 @@ func (g *tuning) downhill(s spot, i int, lowest float64) float64 {
 
 // refine moves the hand-overs of the best spot within a share of their range.
 func (g *tuning) refine(share float64) {
-	if len(g.places) == 0 {
+	if slices.Equal(g.lo, g.hi) {
 		return
 	}
 	at := g.best.spot.clone()

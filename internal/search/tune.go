@@ -152,6 +152,12 @@ func (t *Tuner) prepare(r routes.Route) (*tuning, error) {
 		if err != nil {
 			return nil, err
 		}
+		if k, ok := t.kept(r); ok && k.beds[place] > 0 {
+			if !(k.beds[place] >= lo && k.beds[place] <= hi) {
+				return nil, fmt.Errorf("%w: a %s does not hand over the %.3g mg/kg kept", routes.ErrRefused, r[place].Kind, k.beds[place])
+			}
+			lo, hi = k.beds[place], k.beds[place]
+		}
 		g.lo, g.hi = append(g.lo, math.Log(lo)), append(g.hi, math.Log(hi))
 	}
 	stands, err := g.standsOnOffer()

@@ -29,7 +29,7 @@ const (
 // is looked for before it is solved for.
 const (
 	rateFactor  = 5
-	sieveFactor = 10
+	sieveFactor = search.DearBeads
 	points      = 6
 )
 

@@ -122,9 +122,9 @@ func (s *chains) extend(b search.Branch) (all []search.Branch, left []routes.Exc
 			continue
 		}
 		tried++
-		id := append(slices.Clone(b.Route), next).ID()
+		chain := append(slices.Clone(b.Route), next)
 		if len(b.Route) > 0 { // single steps are all run
-			if winner := s.marks.Beats(id, s.bounds.Rough(b, next)); winner != "" {
+			if winner := s.marks.Beats(chain, s.bounds.Rough(b, next)); winner != "" {
 				lose(next, winner)
 				continue
 			}
@@ -132,12 +132,12 @@ func (s *chains) extend(b search.Branch) (all []search.Branch, left []routes.Exc
 		longer, err := s.bounds.Extend(b, next)
 		if err != nil {
 			if len(b.Route) > 0 {
-				left = append(left, routes.Excluded{ID: id, Reason: err.Error(), Beaten: true})
+				left = append(left, routes.Excluded{ID: chain.ID(), Reason: err.Error(), Beaten: true})
 			}
 			continue
 		}
 		if len(b.Route) > 0 {
-			if winner := s.marks.Beats(id, s.bounds.Of(longer)); winner != "" {
+			if winner := s.marks.Beats(chain, s.bounds.Of(longer)); winner != "" {
 				lose(next, winner)
 				continue
 			}
@@ -205,8 +205,10 @@ func (s *chains) mark(run *routes.Run) error {
 		}
 	}
 	m, err := s.tuner.MeasuresOf(run)
-	if failed := s.work.k.Lot.FailedBatch; err == nil && failed != nil {
-		m.PerLitre += (1 - s.work.k.Job.Assurance) * failed.Amount.InexactFloat64() / run.LitresDelivered
+	if failed := s.work.k.Lot.FailedBatch; err == nil && failed != nil && s.work.drawn.applies() {
+		var miss float64
+		miss, err = s.work.drawn.miss(run, failed)
+		m.PerLitre += miss
 	}
 	s.marks.Set(run.Route, m)
 	return err

@@ -46,7 +46,7 @@ type question struct {
 	book    costs.Book
 	site    *costs.Arrangement
 	offered []routes.Route
-	longer  []routes.Route // those that were found beside the usual ones
+	longer  []routes.Route // those of the ranking beside the usual ones
 	warm    map[string]routes.Settings
 	now     map[string]float64 // cost a litre of each route as things are; +Inf where it cannot be had
 	stop    func() error
@@ -69,8 +69,7 @@ func newQuestion(ctx context.Context, r *Report, l *Lot, c *catalog.Catalog) (*q
 	for i := range l.Routes {
 		r := &l.Routes[i]
 		q.warm[r.ID] = r.Run.Settings
-		leads := i == 0 || r == l.Best() // others take more time here than they tell
-		if leads && !slices.ContainsFunc(offered, func(o routes.Route) bool { return o.ID() == r.ID }) {
+		if !slices.ContainsFunc(offered, func(o routes.Route) bool { return o.ID() == r.ID }) {
 			q.longer = append(q.longer, r.Run.Route)
 		}
 	}

@@ -26,7 +26,7 @@ func (l *Lot) dropBeaten(t *search.Tuner, marks *search.Marks) error {
 		if err != nil {
 			return err
 		}
-		if winner := marks.Beats(r.ID, []search.Measures{m}); winner != "" {
+		if winner := marks.Beats(r.Run.Route, []search.Measures{m}); winner != "" {
 			by[r.ID] = fmt.Sprintf("dearer than %s, and what it saves in attended hours, energy and waste is worth less than 1 %% of it", winner)
 		}
 	}

@@ -43,16 +43,26 @@ func newDoubts(ctx context.Context, k *routes.Case, book costs.Book, site *costs
 	if o.Draws == 0 {
 		return nil, nil
 	}
-	d := &doubts{limits: doubt.Limits{Least: k.AcceptFrom(), Most: k.Limit.AcceptAt}, assurance: k.Job.Assurance}
-	var err error
-	if d.search, err = doubt.New(k, book, site, searchDraws, o.Seed); err != nil {
+	d, err := searchDoubts(ctx, k, book, site, o.Seed)
+	if err != nil {
 		return nil, err
 	}
 	if d.all, err = doubt.New(k, book, site, o.Draws, o.Seed); err != nil {
 		return nil, err
 	}
 	d.all.Like(d.search)
-	d.search.Stop, d.all.Stop = ctx.Err, ctx.Err
+	d.all.Stop = ctx.Err
+	return d, nil
+}
+
+// searchDoubts are the draws of a search alone.
+func searchDoubts(ctx context.Context, k *routes.Case, book costs.Book, site *costs.Arrangement, seed uint64) (*doubts, error) {
+	d := &doubts{limits: doubt.Limits{Least: k.AcceptFrom(), Most: k.Limit.AcceptAt}, assurance: k.Job.Assurance}
+	var err error
+	if d.search, err = doubt.New(k, book, site, searchDraws, seed); err != nil {
+		return nil, err
+	}
+	d.search.Stop = ctx.Err
 	return d, nil
 }
 
@@ -71,7 +81,17 @@ func (d *doubts) sure(t *search.Tuner, r routes.Route, run routes.Run) (routes.R
 	if !run.Meets || !d.applies() {
 		return run, nil
 	}
-	return t.Assured(r, run, search.Assurance{Sure: d.sureEnough})
+	a := search.Assurance{Sure: d.sureEnough}
+	if t.Case.Lot.FailedBatch != nil && t.Mix == nil && t.Objective == search.Cost {
+		a.Miss = func(run *routes.Run) (float64, error) { return d.miss(run, t.Case.Lot.FailedBatch) }
+	}
+	return t.Assured(r, run, a)
+}
+
+// miss is what missing the target is expected to cost a litre, by the draws of a search.
+func (d *doubts) miss(run *routes.Run, failed *job.FailedBatch) (float64, error) {
+	chance, err := d.search.Chance(run, d.limits)
+	return (1 - chance) * failed.Amount.InexactFloat64() / run.LitresDelivered, err
 }
 
 // sureEnough reports whether a plan is, by the draws of a search. Its chance does not
