@@ -12,6 +12,7 @@ import (
 type Assurance struct {
 	Sure func(run *routes.Run) (bool, error)    // whether its chance reaches the assurance
 	Miss func(run *routes.Run) (float64, error) // what missing the target is expected to cost, in the objective; nil: nothing
+	Most float64                                // what comes out no better than this is of no use; 0: all is
 }
 
 // aimTries are the bisections of ln(aim) between the driest that a step can do and the
@@ -55,13 +56,21 @@ func (l *lifting) ended(run routes.Run) (trial, error) {
 	if err != nil {
 		return trial{}, err
 	}
-	return l.best([]trial{{run: run, score: score}}, trial{score: math.Inf(1)})
+	return l.best([]trial{{run: run, score: score}}, l.none())
+}
+
+// none is as good as a run has to become.
+func (l *lifting) none() trial {
+	if l.Most > 0 {
+		return trial{score: l.Most}
+	}
+	return trial{score: math.Inf(1)}
 }
 
 // soaked is the best sure run over the stands of the last soak, each with every number of
 // lots over its charge and with several charges; or the shortest that is as good.
 func (l *lifting) soaked(run routes.Run) (trial, error) {
-	best := trial{score: math.Inf(1)}
+	best := l.none()
 	g, err := l.t.prepare(l.route)
 	if err != nil {
 		return best, err

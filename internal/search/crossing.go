@@ -4,6 +4,7 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"slices"
 
 	"parch/internal/thermo"
 )
@@ -18,7 +19,9 @@ type Crossing struct {
 	OneBelow bool // the first side is the cheaper one under At
 	Step     bool // one of the costs jumps there: the two do not meet
 	Never    bool
-	OneAhead bool // where Never: the first side is the cheaper one all along
+	OneAhead bool    // where Never: the first side is the cheaper one all along
+	Closest  float64 // where Never: the figure asked for at which the two are closest
+	Apart    float64 // where Never: by how much there, as a share of their mean
 }
 
 // CloseEnough is the share by which two costs may differ at a break-even.
@@ -28,9 +31,9 @@ const CloseEnough = 1e-4
 const lnTolerance = 1e-8
 
 // Cross finds where the order of two sides changes between lo and hi: at points
-// spaced evenly in the logarithm the sign of the difference is looked for, the
-// change next to now is solved for by Brent's method.
-func Cross(d Duel, lo, hi, now float64, points int) (Crossing, error) {
+// spaced evenly in the logarithm, and at others between them, the sign of the difference is
+// looked for; the change next to now is solved for by Brent's method.
+func Cross(d Duel, lo, hi, now float64, points int, others ...float64) (Crossing, error) {
 	var failed error
 	gap := func(lnX float64) float64 {
 		one, other, err := d(math.Exp(lnX))
@@ -39,10 +42,20 @@ func Cross(d Duel, lo, hi, now float64, points int) (Crossing, error) {
 		}
 		return difference(one, other)
 	}
-	xs, gaps := make([]float64, points), make([]float64, points)
+	xs := make([]float64, points)
 	for i := range xs {
 		xs[i] = math.Log(lo) + math.Log(hi/lo)*float64(i)/float64(points-1)
-		gaps[i] = gap(xs[i])
+	}
+	for _, x := range others {
+		if x > lo && x < hi {
+			xs = append(xs, math.Log(x))
+		}
+	}
+	slices.Sort(xs)
+	xs = slices.Compact(xs)
+	gaps := make([]float64, len(xs))
+	for i, x := range xs {
+		gaps[i] = gap(x)
 	}
 	if failed != nil {
 		return Crossing{}, failed
@@ -54,7 +67,7 @@ func Cross(d Duel, lo, hi, now float64, points int) (Crossing, error) {
 		}
 	}
 	if at < 0 {
-		return never(gaps)
+		return never(xs, gaps)
 	}
 	root, err := thermo.Brent(gap, xs[at], xs[at+1], lnTolerance)
 	if err = firstOf(failed, err); err != nil {
@@ -85,13 +98,18 @@ func away(xs []float64, i int, now float64) float64 {
 	return math.Max(0, math.Max(xs[i]-lnNow, lnNow-xs[i+1]))
 }
 
-func never(gaps []float64) (Crossing, error) {
-	for _, g := range gaps {
-		if !math.IsNaN(g) {
-			return Crossing{At: math.NaN(), Never: true, OneAhead: g < 0}, nil
+func never(xs, gaps []float64) (Crossing, error) {
+	c := Crossing{At: math.NaN(), Never: true}
+	least := math.Inf(1)
+	for i, g := range gaps {
+		if math.Abs(g) < least {
+			least, c.OneAhead, c.Closest, c.Apart = math.Abs(g), g < 0, math.Exp(xs[i]), math.Abs(g)
 		}
 	}
-	return Crossing{}, fmt.Errorf("%w over the whole range", errNoOffer)
+	if math.IsInf(least, 1) {
+		return Crossing{}, fmt.Errorf("%w over the whole range", errNoOffer)
+	}
+	return c, nil
 }
 
 var errNoOffer = errors.New("neither side has a route that reaches the limit")

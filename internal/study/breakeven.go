@@ -56,10 +56,9 @@ func (q *question) breakEvens(ctx context.Context) error {
 
 // sides are two fields of routes over a figure of the job, and who won them last.
 type sides struct {
-	at         func(x float64) *search.Tuner
-	field      func(t *search.Tuner, first bool) search.Field
-	floors     *floors
-	one, other search.Won
+	one, other func(x float64) search.Field
+	floors     func(x float64) *floors
+	won, lost  search.Won // by the one and the other
 }
 
 // floors are what routes cost at a figure already asked for. The cost rises with
@@ -93,34 +92,26 @@ func (f *floors) learn(x float64, cost map[string]float64) {
 }
 
 func (s *sides) duel(x float64) (one, other float64, err error) {
-	t, low := s.at(x), s.floors.at(x)
+	known := s.floors(x)
+	low := known.at(x)
 	var found map[string]float64
-	if s.other, found, err = s.field(t, false).Cheapest(low, math.Inf(1)); err != nil {
+	if s.lost, found, err = s.other(x).Cheapest(low, math.Inf(1)); err != nil {
 		return 0, 0, err
 	}
-	s.floors.learn(x, found)
-	if s.one, found, err = s.field(t, true).Cheapest(low, s.other.Cost); err != nil {
+	known.learn(x, found)
+	if s.won, found, err = s.one(x).Cheapest(low, s.lost.Cost); err != nil {
 		return 0, 0, err
 	}
-	s.floors.learn(x, found)
-	return s.one.AtLeast, s.other.Cost, nil
+	known.learn(x, found)
+	return s.won.AtLeast, s.lost.Cost, nil
 }
 
 // families asks where the cheapest of one kind of routes changes places with the
-// cheapest of another kind.
-func (q *question) families(b BreakEven, known *floors, at func(float64) *search.Tuner, first, second func(routes.Route) bool) (*BreakEven, error) {
-	warm := maps.Clone(q.warm)
-	s := sides{at: at, floors: known, field: func(t *search.Tuner, isFirst bool) search.Field {
-		f := q.field(t, second)
-		if isFirst {
-			f = q.field(t, first)
-		}
-		f.Warm, f.Learns = warm, true
-		return f
-	}}
-	c, err := search.Cross(s.duel, b.From, b.To, b.Now, points)
+// cheapest of another kind. Beside the usual points it looks at others.
+func (b BreakEven) families(s *sides, others ...float64) (*BreakEven, search.Crossing, error) {
+	c, err := search.Cross(s.duel, b.From, b.To, b.Now, points, others...)
 	if err != nil {
-		return nil, err
+		return nil, c, err
 	}
 	b.At, b.Never, b.Step = c.At, c.Never, c.Step
 	below, above := c.At*(1-beside), c.At*(1+beside)
@@ -129,10 +120,10 @@ func (q *question) families(b BreakEven, known *floors, at func(float64) *search
 		above = below
 	}
 	if b.Below, err = s.winner(below); err != nil {
-		return nil, err
+		return nil, c, err
 	}
 	b.Above, err = s.winner(above)
-	return &b, err
+	return &b, c, err
 }
 
 // beside a break-even, as a share of it, one looks who is ahead.
@@ -141,9 +132,9 @@ const beside = 1e-6
 // winner is the cheaper side's route.
 func (s *sides) winner(x float64) (string, error) {
 	if one, other, err := s.duel(x); err != nil || one < other {
-		return s.one.ID(), err
+		return s.won.ID(), err
 	}
-	return s.other.ID(), nil
+	return s.lost.ID(), nil
 }
 
 // settle enters the crossing of two sides.
@@ -161,34 +152,22 @@ func (b *BreakEven) settle(c search.Crossing, one, other string) {
 	}
 }
 
-// leastStart is how far above the target the range of start waters begins.
-const leastStart = 1.5
-
-// mostStart is the wettest start asked for where the solvent takes up any water.
-const mostStart = 0.1
-
-func (q *question) startWater() (*BreakEven, error) {
-	b := BreakEven{Key: StartWater, Unit: "mg/kg", Now: q.lot.Job.Water * 1e6, What: "start water at which pre-drying pays"}
-	b.From, b.To = leastStart*q.lot.Job.Target*1e6, math.Min(mostStart, q.k.Saturation())*1e6
-	if b.From >= b.To {
-		return nil, nil
-	}
-	at := func(x float64) *search.Tuner {
-		return q.withLot(func(l *job.Lot) { l.Water, l.Saturated = x*1e-6, false })
-	}
-	return q.families(b, &floors{}, at, isPreDried, isDirect)
-}
-
 const litresPerM3, monthsPerYear = 1e3, 12
 
 func (q *question) volume() (*BreakEven, error) {
 	litres := q.lot.Job.BatchM3 * litresPerM3
 	b := BreakEven{Key: Volume, Unit: "L/month", Now: litres * q.lot.Job.BatchesPerYear / monthsPerYear, What: "litres a month at which drying here beats buying dry"}
 	b.From, b.To = litres*1/monthsPerYear, litres*1000/monthsPerYear
-	at := func(x float64) *search.Tuner {
-		return q.withLot(func(l *job.Lot) { l.BatchesPerYear = x * monthsPerYear / litres })
+	known, warm := &floors{falls: true}, maps.Clone(q.warm)
+	side := func(pass func(routes.Route) bool) func(float64) search.Field {
+		return func(x float64) search.Field {
+			f := q.field(q.withLot(func(l *job.Lot) { l.BatchesPerYear = x * monthsPerYear / litres }), pass)
+			f.Warm, f.Learns = warm, true
+			return f
+		}
 	}
-	return q.families(b, &floors{falls: true}, at, isDrying, isBuy)
+	found, _, err := b.families(&sides{one: side(isDrying), other: side(isBuy), floors: func(float64) *floors { return known }})
+	return found, err
 }
 
 func (q *question) technician() (*BreakEven, error) {

@@ -49,8 +49,6 @@ var workedJobs = []string{"saturated-toluene", "reclaimed-ethyl-acetate", "aceto
 // together anew.
 func (q *question) at(t *testing.T, b *BreakEven, x float64) *search.Tuner {
 	switch b.Key {
-	case StartWater:
-		return q.withLot(func(l *job.Lot) { l.Water, l.Saturated = x*1e-6, false })
 	case Volume:
 		return q.withLot(func(l *job.Lot) { l.BatchesPerYear = x * 12 / (l.BatchM3 * 1e3) })
 	case Technician:
@@ -93,13 +91,17 @@ func TestOrderChangesAtTheBreakEven(t *testing.T) {
 				t.Fatal(err)
 			}
 			q.warm = nil
+			anchors := q.asIs()
+			if _, err := q.startWaters().settled(anchors); err != nil && !search.NoOffer(err) {
+				t.Fatal(err)
+			}
 			for i := range r.Lots[0].BreakEvens {
 				b := &r.Lots[0].BreakEvens[i]
 				what := fmt.Sprintf("%s, %d draws, %s", name, draws, b.Key)
 				switch {
 				case !b.Never:
 					kinds["flip"]++
-					q.checkFlip(t, what, b)
+					q.checkFlip(t, what, b, anchors)
 				case b.Key != Receiver && b.Key != StartWater && b.Key != Volume:
 					kinds["never"]++
 					q.checkNever(t, what, b)
@@ -114,8 +116,9 @@ func TestOrderChangesAtTheBreakEven(t *testing.T) {
 
 // costAt is the cost a litre of a route with a figure of the job at x; +Inf where it
 // cannot be had.
-func (q *question) costAt(t *testing.T, b *BreakEven, x float64, id string) float64 {
+func (q *question) costAt(t *testing.T, b *BreakEven, x float64, id string, anchors *starts) float64 {
 	t.Helper()
+	one := func(r routes.Route) bool { return r.ID() == id }
 	if b.Key == Receiver { // the receivers change places, over one route
 		cost, err := q.withReceiver(q.cheapestTrap(), b.Below, b.Above)(x, id)
 		if err != nil {
@@ -123,20 +126,27 @@ func (q *question) costAt(t *testing.T, b *BreakEven, x float64, id string) floa
 		}
 		return cost
 	}
-	won, _, err := q.field(q.at(t, b, x), func(r routes.Route) bool { return r.ID() == id }).Cheapest(nil, math.Inf(1))
+	var f search.Field
+	if b.Key == StartWater {
+		f = anchors.field(x, one)
+		f.Warm, f.Learns = nil, false
+	} else {
+		f = q.field(q.at(t, b, x), one)
+	}
+	won, _, err := f.Cheapest(nil, math.Inf(1))
 	if err != nil {
 		t.Fatal(err)
 	}
 	return won.Cost
 }
 
-func (q *question) checkFlip(t *testing.T, what string, b *BreakEven) {
+func (q *question) checkFlip(t *testing.T, what string, b *BreakEven, anchors *starts) {
 	t.Helper()
-	if below, above := q.costAt(t, b, b.At, b.Below), q.costAt(t, b, b.At, b.Above); !b.Step && !(math.Abs(below-above) <= 1e-4*above) {
+	if below, above := q.costAt(t, b, b.At, b.Below, anchors), q.costAt(t, b, b.At, b.Above, anchors); !b.Step && !(math.Abs(below-above) <= 1e-4*above) {
 		t.Errorf("%s at %.8g: %s costs %.8g, %s %.8g", what, b.At, b.Below, below, b.Above, above)
 	}
 	for _, side := range []float64{0.99, 1.01} {
-		below, above := q.costAt(t, b, b.At*side, b.Below), q.costAt(t, b, b.At*side, b.Above)
+		below, above := q.costAt(t, b, b.At*side, b.Below, anchors), q.costAt(t, b, b.At*side, b.Above, anchors)
 		if (below < above) != (side < 1) {
 			t.Errorf("%s at %.8g: %s costs %.8g, %s %.8g: the order does not flip", what, b.At*side, b.Below, below, b.Above, above)
 		}
@@ -152,7 +162,7 @@ func (q *question) checkNever(t *testing.T, what string, b *BreakEven) {
 		if err != nil {
 			t.Fatal(err)
 		}
-		if cost := q.costAt(t, b, x, b.Below); cost > won.Cost*(1+1e-4) {
+		if cost := q.costAt(t, b, x, b.Below, nil); cost > won.Cost*(1+1e-4) {
 			t.Errorf("%s at %.5g: %s costs %.6g, %s %.6g", what, x, b.Below, cost, won.ID(), won.Cost)
 		}
 	}

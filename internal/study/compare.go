@@ -98,7 +98,7 @@ func (w *work) tune(t *search.Tuner, r routes.Route) (routes.Run, error) {
 	}
 	run, err := t.Tune(r)
 	if err == nil {
-		run, err = w.drawn.sure(t, r, run)
+		run, err = w.drawn.sure(t, r, run, 0)
 	}
 	w.lock.Lock()
 	defer w.lock.Unlock()

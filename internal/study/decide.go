@@ -41,15 +41,18 @@ func (r *Report) decide(ctx context.Context, c *catalog.Catalog, progress *meter
 // none is, of what is computed, whatever the chance to reach the limit.
 type question struct {
 	lot     *Lot
+	surely  *surely // how the routes are made sure; nil: they are not
+	seed    uint64
 	job     *job.Job
 	k       *routes.Case
 	book    costs.Book
 	site    *costs.Arrangement
-	offered []routes.Route
+	all     []routes.Route // but for those that settle first
+	offered []routes.Route // those of them that are sure enough
 	longer  []routes.Route // those of the ranking beside the usual ones
 	warm    map[string]routes.Settings
 	now     map[string]float64 // cost a litre of each route as things are; +Inf where it cannot be had
-	stop    func() error
+	ctx     context.Context
 }
 
 func newQuestion(ctx context.Context, r *Report, l *Lot, c *catalog.Catalog) (*question, error) {
@@ -59,11 +62,11 @@ func newQuestion(ctx context.Context, r *Report, l *Lot, c *catalog.Catalog) (*q
 	if err != nil {
 		return nil, err
 	}
-	q := &question{lot: l, job: r.Job, k: k, book: r.Book, site: costs.NewArrangement(c, r.Job), warm: map[string]routes.Settings{}, now: map[string]float64{}, stop: ctx.Err}
+	q := &question{lot: l, surely: l.surely, seed: uint64(r.Seed), job: r.Job, k: k, book: r.Book, site: costs.NewArrangement(c, r.Job), warm: map[string]routes.Settings{}, now: map[string]float64{}, ctx: ctx}
 	offered, _ := k.Candidates()
 	for _, route := range q.quick(offered) {
 		if route[0].Kind != steps.Settle {
-			q.offered = append(q.offered, route)
+			q.all = append(q.all, route)
 		}
 	}
 	for i := range l.Routes {
@@ -73,13 +76,14 @@ func newQuestion(ctx context.Context, r *Report, l *Lot, c *catalog.Catalog) (*q
 			q.longer = append(q.longer, r.Run.Route)
 		}
 	}
-	q.offered = q.sure(append(q.offered, q.longer...))
+	q.all = append(q.all, q.longer...)
+	q.offered = q.sure(slices.Clone(q.all))
 	_, q.now, err = q.field(q.tuner(k, q.book), nil).Cheapest(nil, math.Inf(1))
 	return q, err
 }
 
 func (q *question) tuner(k *routes.Case, book costs.Book) *search.Tuner {
-	return &search.Tuner{Case: k, Book: book, Objective: search.Cost, Site: q.site, Exact: true, Kept: q.lot.surely.kept, Stop: q.stop}
+	return &search.Tuner{Case: k, Book: book, Objective: search.Cost, Site: q.site, Exact: true, Kept: q.surely.kept, Stop: q.ctx.Err}
 }
 
 // field of the routes that pass, tuned for a case and its prices.
@@ -95,7 +99,7 @@ func (q *question) field(t *search.Tuner, pass func(routes.Route) bool) search.F
 
 // sure leaves out the routes that are not sure enough.
 func (q *question) sure(all []routes.Route) []routes.Route {
-	return slices.DeleteFunc(all, func(r routes.Route) bool { return q.lot.surely.way(r).out })
+	return slices.DeleteFunc(all, func(r routes.Route) bool { return q.surely.way(r).out })
 }
 
 // quick leaves the carriers out but for the one that leads: they take more time here

@@ -76,12 +76,13 @@ func (d *doubts) price(book costs.Book) {
 // applies reports whether there are draws and a limit that can be shown.
 func (d *doubts) applies() bool { return d != nil && !math.IsNaN(d.limits.Most) }
 
-// sure tightens a run until it is sure enough, where that can be.
-func (d *doubts) sure(t *search.Tuner, r routes.Route, run routes.Run) (routes.Run, error) {
+// sure tightens a run until it is sure enough, where that can be for less than most
+// (0: for any value of the objective).
+func (d *doubts) sure(t *search.Tuner, r routes.Route, run routes.Run, most float64) (routes.Run, error) {
 	if !run.Meets || !d.applies() {
 		return run, nil
 	}
-	a := search.Assurance{Sure: d.sureEnough}
+	a := search.Assurance{Sure: d.sureEnough, Most: most}
 	if t.Case.Lot.FailedBatch != nil && t.Mix == nil && t.Objective == search.Cost {
 		a.Miss = func(run *routes.Run) (float64, error) { return d.miss(run, t.Case.Lot.FailedBatch) }
 	}

@@ -4,6 +4,7 @@ import (
 	"maps"
 	"os"
 	"slices"
+	"strings"
 	"testing"
 
 	"github.com/shopspring/decimal"
@@ -157,6 +158,43 @@ func TestFailedBatchSizesTheLastStep(t *testing.T) {
 			if r.ID == other.ID && total(best) > total(&r)*(1+search.Tie) {
 				t.Errorf("%s comes to %.6g a litre with its misses; as for an assurance of %g %s (%d) comes to %.6g", best.ID, total(best), assurance, r.ID, i, total(&r))
 			}
+		}
+	}
+}
+
+// The start water at which pre-drying pays is that of fresh comparisons: on either side of
+// it their winner is of the kind that is said to be ahead, and the answer does not go with
+// the water of the lot that it is asked of.
+func TestFreshComparisonsFlipAtTheStartWater(t *testing.T) {
+	if testing.Short() {
+		t.Skip("many whole comparisons")
+	}
+	j, c := jobOf(t, "reclaimed-ethyl-acetate")
+	of := func(water float64, o Options) *Lot {
+		other := *j
+		other.Lots = slices.Clone(j.Lots)
+		other.Lots[0].Water = water
+		return &compared(t, &other, c, o).Lots[0]
+	}
+	o := Options{Draws: 400, Seed: 1}
+	asked := func(water float64) *BreakEven {
+		all := of(water, o).BreakEvens
+		i := slices.IndexFunc(all, func(b BreakEven) bool { return b.Key == StartWater })
+		if i < 0 || all[i].Never {
+			t.Fatalf("from %g: %+v", water, all)
+		}
+		return &all[i]
+	}
+	b := asked(j.Lots[0].Water)
+	for _, water := range []float64{0.005, 0.02} {
+		if other := asked(water); away(other.At, b.At) > 0.03 {
+			t.Errorf("asked of %g kg/kg pre-drying pays from %.5g mg/kg, asked of %g kg/kg from %.5g", j.Lots[0].Water, b.At, water, other.At)
+		}
+	}
+	o.RankingOnly = true
+	for side, want := range map[float64]string{0.95: b.Below, 1.05: b.Above} {
+		if best := of(b.At*side*1e-6, o).Best(); isPreDried(best.Run.Route) != strings.Contains(want, "+") {
+			t.Errorf("a lot of %.5g mg/kg is dried by %s, %s was said", b.At*side, best.ID, want)
 		}
 	}
 }

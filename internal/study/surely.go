@@ -9,9 +9,10 @@ import (
 // surely is how the routes of a lot became sure enough, as things are. What is asked of
 // other lots, prices and uses rests on it: each answer anew by draws would take too long.
 type surely struct {
-	limit float64 // kg/kg, that of acceptance
-	found []judged
-	ways  memo.Map[string, way] // by route id
+	limit  float64 // kg/kg, that of acceptance
+	found  []judged
+	closed bool                  // what was not tried is no part of the answer
+	ways   memo.Map[string, way] // by route id
 }
 
 type judged struct {
@@ -50,6 +51,9 @@ func (s *surely) way(r routes.Route) way {
 // find takes for a route that was not tried the lowest aim of those that end as it does.
 func (s *surely) find(r routes.Route) (w way) {
 	id, end := r.ID(), r[len(r)-1]
+	if s.closed {
+		w.out = true
+	}
 	for i := range s.found {
 		f := &s.found[i]
 		same := f.run.Route.ID() == id
@@ -58,7 +62,7 @@ func (s *surely) find(r routes.Route) (w way) {
 			return way{kept: search.KeptOf(&f.run, s.limit), known: true}
 		case same:
 			return way{out: true}
-		case f.run.Route[len(f.run.Route)-1] != end:
+		case s.closed || f.run.Route[len(f.run.Route)-1] != end:
 		case f.sure:
 			if k := search.KeptAtTheEnd(&f.run, s.limit, r); !w.known || k.Share() < w.kept.Share() {
 				w = way{kept: k, known: true}
