@@ -24,11 +24,12 @@ func (s *starts) add(x float64) error {
 		return err
 	}
 	j := &judge{d: d, tuner: &search.Tuner{Case: k, Book: q.book, Objective: search.Cost, Site: q.site, Exact: true, Stop: q.ctx.Err}}
-	ahead, err := s.guess(x, isDirect)
+	sensible, _ := j.tuner.Prune(q.all)
+	ahead, err := s.guess(x, sensible, isDirect)
 	if err != nil {
 		return err
 	}
-	behind, err := s.guess(x, isPreDried)
+	behind, err := s.guess(x, sensible, isPreDried)
 	if err != nil {
 		return err
 	}
@@ -59,7 +60,7 @@ type guess struct {
 
 // guess takes the settings of the nearest anchor and, for what was not tried there, those
 // of the lot as it is. What can be had by neither is tried last.
-func (s *starts) guess(x float64, kind func(routes.Route) bool) (guess, error) {
+func (s *starts) guess(x float64, all []routes.Route, kind func(routes.Route) bool) (guess, error) {
 	won, cost, err := s.field(x, kind).Cheapest(nil, math.Inf(1))
 	if err != nil {
 		return guess{}, err
@@ -70,7 +71,7 @@ func (s *starts) guess(x float64, kind func(routes.Route) bool) (guess, error) {
 		return guess{}, err
 	}
 	g := guess{cost: map[string]float64{}, best: won.Cost}
-	for _, r := range s.q.all {
+	for _, r := range all {
 		if !kind(r) {
 			continue
 		}
