@@ -199,7 +199,7 @@ func (l *layout) cardTop(c *cardModel, row int) {
 	g.put(cardChosen, row+1, derived(fmt.Sprintf("IFERROR(MATCH(%s,%s,0),1)", at(cardText, row+1), choices), float64(c.chosen+1)).shown("0"))
 	g.limits = append(g.limits, limit{place: at(cardText, row+1) + ":" + at(cardRouteEnd, row+1), words: choices, prompt: "Choose the route that the card is for.", refuse: "Choose a route from the list."})
 	state := fmt.Sprintf(`IF(%s>0,"Edited since the run: %s","Run of "&%s)`, changedName, runAgain, c.dateCell(row+2))
-	g.put(cardRouteEnd+1, row+1, cell{look: message, formula: state, value: "Run of " + l.runDate()})
+	g.put(cardRouteEnd+1, row+1, cell{look: formula, formula: state, value: "Run of " + l.runDate()})
 	g.put(cardChosen, row+2, text(plain, l.runDate()))
 	g.flags = append(g.flags, flag{at(cardRouteEnd+1, row+1) + ":" + at(cardField, row+1), changedName + ">0", fail},
 		flag{at(cardText, row+4), changedName + ">0", fail})

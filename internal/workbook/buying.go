@@ -146,14 +146,23 @@ func (l *layout) orderNotes(g *grid, list []costs.Purchase) {
 }
 
 func orderNote(p *costs.Purchase) string {
-	unit := symbol(p.Unit)
+	amount := func(x float64) string {
+		unit := symbol(p.Unit)
+		if unit == "test" && x != 1 {
+			unit = "tests"
+		}
+		return significant(x) + " " + unit
+	}
 	parts := []string{p.Why}
+	if year := p.Process + p.Losses; p.Unit == "kg" && p.LaterYears > 0 && p.LaterYears < year*(1-1e-9) {
+		parts = append(parts, "the need is the first year's, its whole first charge with it; later years use up "+amount(p.LaterYears))
+	}
 	if p.Leftover > 0 && len(p.Orders) > 0 {
-		parts = append(parts, fmt.Sprintf("%s %s left at the end of the year", significant(p.Leftover), unit))
+		parts = append(parts, amount(p.Leftover)+" left at the end of the year")
 	}
 	for _, o := range p.Orders {
 		if o.Every > 0 {
-			parts = append(parts, fmt.Sprintf("delivered %d × %s %s every %d days", o.Each, significant(float(o.Pack.Size)), unit, o.Every))
+			parts = append(parts, fmt.Sprintf("delivered %d × %s every %d days", o.Each, amount(float(o.Pack.Size)), o.Every))
 		}
 		if o.Pack.ShelfDays > 0 {
 			parts = append(parts, fmt.Sprintf("keeps %d days after opening", o.Pack.ShelfDays))
@@ -166,7 +175,7 @@ func orderNote(p *costs.Purchase) string {
 		parts = append(parts, "lead time not given, taken as 0 days")
 	}
 	if p.Peak > 0 {
-		parts = append(parts, fmt.Sprintf("at most %s %s in store at once", significant(p.Peak), unit))
+		parts = append(parts, fmt.Sprintf("at most %s in store at once", amount(p.Peak)))
 	}
 	if s := keeping(p); s != "" {
 		parts = append(parts, s)

@@ -198,15 +198,15 @@ func solid(colour string) excelize.Fill {
 }
 
 func axisTitle(s string) excelize.ChartTitle {
-	return excelize.ChartTitle{Paragraph: []excelize.RichTextRun{{Text: s, Font: &excelize.Font{Color: darkInk, Size: 10}}}}
+	return excelize.ChartTitle{Paragraph: []excelize.RichTextRun{{Text: s, Font: &excelize.Font{Family: typeface, Color: darkInk, Size: 10}}}}
 }
 
 func baseChart(kind excelize.ChartType, name string) *excelize.Chart {
 	vary := false
-	font := excelize.Font{Color: darkInk, Size: 10}
+	font := excelize.Font{Family: typeface, Color: darkInk, Size: 10}
 	return &excelize.Chart{
 		Type:       kind,
-		Title:      excelize.ChartTitle{Paragraph: []excelize.RichTextRun{{Text: name, Font: &excelize.Font{Color: black, Size: 12, Bold: true}}}},
+		Title:      excelize.ChartTitle{Paragraph: []excelize.RichTextRun{{Text: name, Font: &excelize.Font{Family: typeface, Color: black, Size: 12, Bold: true}}}},
 		Legend:     excelize.ChartLegend{Position: "bottom", Font: &font},
 		VaryColors: &vary,
 		XAxis:      excelize.ChartAxis{Font: font},

@@ -51,13 +51,12 @@ func (l *layout) compareBlock(g *grid) {
 	if len(l.routes) == 0 {
 		return
 	}
-	g.boldRows, g.boldColumns = l.compareRows, 2
 	place := func(column int) string { return at(column, first) + ":" + at(column, l.compareRows.last) }
 	g.flags = append(g.flags,
 		flag{place(compareReaches), fmt.Sprintf(`$C%d="yes"`, first), pass},
 		flag{place(compareReaches), fmt.Sprintf(`$C%d="no"`, first), fail},
 		flag{place(compareState), fmt.Sprintf(`LEN($%s)>0`, at(compareState, first)), warn},
-		flag{fmt.Sprintf("A%d:B%d", first, l.compareRows.last), fmt.Sprintf(`$H%d=1`, first), pass},
+		flag{fmt.Sprintf("A%d:B%d", first, l.compareRows.last), fmt.Sprintf(`$H%d=1`, first), best},
 		flag{place(compareRank), fmt.Sprintf(`$H%d=1`, first), pass})
 }
 

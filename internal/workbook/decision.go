@@ -67,7 +67,7 @@ func (g *grid) legible(r rows) bool {
 // would change the choice, and the next ones in a line each.
 func (l *layout) decisionOf(full, lines, most int) *grid {
 	g := newGrid(sheetDecision, "To sign: what is recommended for each lot, why, and what would change it. The table follows the prices; sentences are those of the run.",
-		tabResult, checkCell(), 8, 14, 29, 11, 9, 9, 10, 9, 9, 7, 8, 7, 24)
+		tabResult, checkCell(), 8, 14, 28, 11, 9.5, 9.5, 10, 9, 9, 7, 8, 7, 24)
 	g.printColumns = decideChance
 	g.mixed, g.frozenRows, g.portrait, g.onePage = true, frameRows, true, true
 	l.banner(g, frameRows+1)

@@ -3,6 +3,8 @@ package workbook
 import (
 	"fmt"
 	"math"
+	"regexp"
+	"strconv"
 	"strings"
 
 	"parch/internal/costs"
@@ -348,7 +350,7 @@ func (l *layout) defaultsBlock(g *grid) {
 		if d.Date != "" {
 			note += "; " + d.Date
 		}
-		fact(g, "", d.Key, text(program, d.Text), "", note)
+		fact(g, "", lotCalled(d.Key), text(program, d.Text), "", note)
 	}
 }
 
@@ -358,4 +360,19 @@ func finite(v float64, unit, format string) cell {
 		return blank(program)
 	}
 	return number(v, unit).shown(format)
+}
+
+var lotInKey = regexp.MustCompile(`^lots\[([0-9]+)\]\.`)
+
+// lotCalled is the key of a default with the number of its lot as sheets have it, from 1.
+func lotCalled(key string) string {
+	m := lotInKey.FindStringSubmatch(key)
+	if m == nil {
+		return key
+	}
+	n, err := strconv.Atoi(m[1])
+	if err != nil {
+		return key
+	}
+	return fmt.Sprintf("lot %d: %s", n+1, key[len(m[0]):])
 }

@@ -21,6 +21,7 @@ const (
 	formula        // computed by the sheet
 	program        // computed by the program: changes only by a new run
 	message        // state of the checks
+	best           // flag of names and ids: not bold, which would take more room
 	pass           // flag
 	warn           // flag
 	fail           // flag
@@ -58,6 +59,7 @@ var paints = map[look]paint{
 	formula: {ink: black, paper: white, size: 10},
 	program: {ink: "3D3D3D", paper: "EFEDE8", size: 10, wrap: true},
 	message: {ink: black, paper: white, bold: true, size: 10},
+	best:    {ink: "0E5A43", paper: "DCEDE4", size: 10},
 	pass:    {ink: "0E5A43", paper: "DCEDE4", bold: true, size: 10},
 	warn:    {ink: "6B4A00", paper: "F6EBCB", bold: true, size: 10},
 	fail:    {ink: "7A1B12", paper: "F5DFD8", bold: true, size: 10},

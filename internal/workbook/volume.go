@@ -253,9 +253,9 @@ func (l *layout) volumeChart(g *grid, v *volumeModel, now int) {
 		c.Series = append(c.Series, drawnPoints(name, on(sheetRanges, area(volumeLitres, first, last)), on(sheetRanges, area(volumeFirst, first, last)), symbol))
 	}
 	point(on(sheetRanges, fixed(2, now)), now, now, "circle")
-	g.put(1, now+1, text(plain, "level with the first"))
+	g.putRow(now+1, text(words, v.lot.Job.Name), text(words, "level with the first"))
 	if now+2 <= last {
-		point(on(sheetRanges, fixed(1, now+1)), now+2, last, "star")
+		point(on(sheetRanges, fixed(2, now+1)), now+2, last, "star")
 	}
 	g.draw(chartBeside, v.paid.first-1, besideWidth, volumeHeight, fmt.Sprintf("Lot %d: cost against volume", v.lot.no), c)
 }
