@@ -14,7 +14,7 @@ func (p *page) breakEvens(l *study.Lot) {
 	if len(l.BreakEvens) == 0 {
 		return
 	}
-	p.heading("Break-evens, by cost, the rest as it is, " + l.AskedOf() + ":")
+	p.heading("Break-evens, by cost, the rest as it is, " + l.BreakEvensOf() + ":")
 	for _, b := range l.BreakEvens {
 		if b.Answer != "" {
 			p.say(5, 4, "%s: %s.", sentence(b.What), b.Answer)

@@ -188,7 +188,7 @@ func showLot(l *study.Lot) lotOut {
 		Warnings:       l.Warnings,
 	}
 	if len(l.BreakEvens) > 0 || l.WhatIf != nil {
-		out.AskedOf = l.AskedOf()
+		out.AskedOf = l.BreakEvensOf()
 	}
 	for i := range l.Routes {
 		out.Routes[i] = showRoute(&l.Routes[i])

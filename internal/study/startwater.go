@@ -37,7 +37,7 @@ func (q *question) startWater() (*BreakEven, error) {
 
 // startWaters is the question and its range.
 func (q *question) startWaters() BreakEven {
-	b := BreakEven{Key: StartWater, Unit: "mg/kg", Now: q.lot.Job.Water * 1e6, What: "start water at which pre-drying pays, the routes made sure anew for it"}
+	b := BreakEven{Key: StartWater, Unit: "mg/kg", Now: q.lot.Job.Water * 1e6, What: "start water at which pre-drying pays"}
 	b.From, b.To = leastStart*q.lot.Job.Target*1e6, math.Min(math.Min(math.Max(mostStart, muchWetter*q.lot.Job.Water), 0.5), q.k.Saturation())*1e6
 	return b
 }

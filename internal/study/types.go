@@ -73,6 +73,14 @@ func (l *Lot) AskedOf() string {
 	return "whatever the chance"
 }
 
+// BreakEvensOf says which routes the break-evens are asked of.
+func (l *Lot) BreakEvensOf() string {
+	if l.OfSure() {
+		return l.AskedOf() + ", and for the start water there"
+	}
+	return l.AskedOf()
+}
+
 // Route is one compared route.
 type Route struct {
 	ID, Label string

@@ -219,9 +219,9 @@ func (l *layout) frontBlock(g *grid) {
 // askedOf tells which routes the break-evens are asked of, where that is the same for all
 // lots.
 func (l *layout) askedOf() string {
-	said := l.lots[0].AskedOf()
+	said := l.lots[0].BreakEvensOf()
 	for _, lot := range l.lots[1:] {
-		if lot.AskedOf() != said {
+		if lot.BreakEvensOf() != said {
 			return "where a route is sure enough: of those that are, as sure as now"
 		}
 	}
