@@ -73,8 +73,9 @@ func firstOf(lot *lotModel) string {
 	return fmt.Sprintf(", the first %d routes", mostDrawn)
 }
 
-// compareCharts draws, for each lot, cost by head and beside it the water along
-// the routes, and lays out what the latter draws below them.
+// compareCharts lays out, for each lot, the water along the routes, and draws below it the
+// cost by head and beside that the water. The table fills the page of the routes where the
+// charts have no room there.
 func (l *layout) compareCharts(g *grid) {
 	l.along = map[int]along{}
 	for i, lot := range l.lots {
@@ -83,19 +84,18 @@ func (l *layout) compareCharts(g *grid) {
 		}
 		row := g.below()
 		g.part(row)
+		l.alongBlock(g, row, lot)
 		if i >= mostLotsDrawn {
-			l.alongBlock(g, row, lot)
 			continue
 		}
 		drawn := min(len(lot.routes), mostDrawn)
 		places := rows{lot.routes[0].no - 1, lot.routes[drawn-1].no - 1}
 		height := max(320, 130+barPitch(lot.routes[:drawn])*drawn)
+		row = g.below()
+		g.part(row)
 		if cost := l.costChart(lot, places); len(cost.Series) > 0 { // nothing has a price in some currencies
 			g.draw(1, row, costWidth, height, fmt.Sprintf("Lot %d: cost", lot.no), cost)
 		}
-		table := g.under(placed{row: row, height: height}) + 3
-		g.part(table) // the charts stay with the routes where the table has no room
-		l.alongBlock(g, table, lot)
 		g.draw(waterColumn, row, waterWidth, height, fmt.Sprintf("Lot %d: water", lot.no), l.alongChart(lot))
 	}
 	if left := len(l.lots) - mostLotsDrawn; left > 0 {

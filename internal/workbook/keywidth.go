@@ -21,7 +21,8 @@ func (l *layout) keyWidths(together float64) (lot, route float64) {
 	for _, r := range l.routes {
 		route = max(route, unitsFor(r.ID))
 	}
-	lot, route = min(lot, mostLot), min(route, mostRoute)
+	lot = min(lot, mostLot)
+	route = min(route, mostRoute+mostLot-lot) // what short names of lots leave
 	return lot, max(route, together-lot)
 }
 

@@ -42,9 +42,9 @@ func (l *layout) ranges() *grid {
 	g.mixed, g.frozenRows, g.frozenColumns = true, frameRows, 2
 	l.banner(g, frameRows+1)
 	l.rangeBlock(g)
-	l.rangeCharts(g)
 	g.part(g.below())
-	l.moverBlock(g)
+	l.moverBlock(g) // above the charts: it fills the page of the ranges
+	l.rangeCharts(g)
 	g.part(g.below())
 	l.breakEvenBlock(g)
 	g.part(g.below())
