@@ -26,7 +26,7 @@ func listed(ids []string, room int) string {
 }
 
 // excludedBlock lists what is not offered. Routes whose reasons differ in their figures
-// alone share a line.
+// alone share a line, and so do those of a lot that a cheaper route keeps out.
 func (l *layout) excludedBlock(g *grid) {
 	row := 0
 	for _, lot := range l.lots {
@@ -34,9 +34,10 @@ func (l *layout) excludedBlock(g *grid) {
 		for _, x := range lot.Excluded {
 			list = grouped(list, oneLine(cited(x.Reason, x.Source)), x.ID)
 		}
+		list = dearerTogether(list)
 		for _, e := range list {
 			if row == 0 {
-				row = l.listBlock(g, "Not offered, and why; what a long list leaves out, the JSON of the run names", "Lot", "Routes", "Reason and source")
+				row = l.listBlock(g, "Not offered, and why; what a line leaves out, the JSON of the run names", "Lot", "Routes", "Reason and source")
 			}
 			g.entry(row, words, lot.Job.Name, listed(e.ids, mostNotOffered), e.reason())
 			row++
@@ -104,4 +105,57 @@ func (e *excludedGroup) reason() string {
 		}
 	}
 	return s.String()
+}
+
+// dearer is a reason that names a cheaper route, of a chain that is known in its beginning
+// alone with the steps that may come next.
+var dearer = regexp.MustCompile(`^((?:at best )?dearer than )([^ ,]+)(?:, with .* next)?(, and what it saves .*)$`)
+
+// dearerTogether joins the groups that cheaper routes keep out into one that names these.
+// A beginning that several keep out, each with other steps next, is named once.
+func dearerTogether(list []*excludedGroup) (out []*excludedGroup) {
+	type joined struct {
+		*excludedGroup
+		cheaper []string
+	}
+	var all []*joined
+	for _, e := range list {
+		m := dearer.FindStringSubmatch(e.reason())
+		if m == nil {
+			out = append(out, e)
+			continue
+		}
+		pieces := []string{m[1], m[3]}
+		k := slices.IndexFunc(all, func(j *joined) bool { return slices.Equal(j.pieces, pieces) })
+		if k < 0 {
+			k = len(all)
+			all = append(all, &joined{excludedGroup: &excludedGroup{pieces: pieces}})
+			out = append(out, all[k].excludedGroup)
+		}
+		all[k].cheaper = addTo(all[k].cheaper, m[2])
+		all[k].ids = addTo(all[k].ids, e.ids...)
+	}
+	for _, j := range all {
+		j.pieces = []string{j.pieces[0] + anyOf(j.cheaper) + j.pieces[1]}
+	}
+	return out
+}
+
+// addTo adds what a list does not hold yet.
+func addTo(list []string, more ...string) []string {
+	for _, s := range more {
+		if !slices.Contains(list, s) {
+			list = append(list, s)
+		}
+	}
+	return list
+}
+
+// anyOf lists routes of which each will do.
+func anyOf(ids []string) string {
+	last := len(ids) - 1
+	if last == 0 {
+		return ids[0]
+	}
+	return strings.Join(ids[:last], ", ") + " or " + ids[last]
 }

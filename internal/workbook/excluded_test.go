@@ -83,3 +83,39 @@ func TestListsAreAsHighAsTheirText(t *testing.T) {
 		}
 	}
 }
+
+// What cheaper routes keep out of a lot stands in one line, with those routes named; a
+// beginning that several of them keep out stands there once.
+func TestWhatIsDearerSharesALine(t *testing.T) {
+	const saves = ", and what it saves in attended hours, energy and waste is worth less than 1 % of it"
+	var list []*excludedGroup
+	for _, x := range [][2]string{{"settle", "nothing settles"}, {"trap+…", "at best dearer than soak:sieve-3a, with trap, forerun next" + saves},
+		{"forerun+…", "at best dearer than soak:sieve-4a" + saves}, {"trap+…", "at best dearer than buy, with buy next" + saves}, {"trap+forerun", "dearer than buy" + saves}} {
+		list = grouped(list, x[1], x[0])
+	}
+	want := [][2]string{{"settle", "nothing settles"}, {"trap+…, forerun+…", "at best dearer than soak:sieve-3a, soak:sieve-4a or buy" + saves},
+		{"trap+forerun", "dearer than buy" + saves}}
+	list = dearerTogether(list)
+	if len(list) != len(want) {
+		t.Fatalf("%d lines, want %d", len(list), len(want))
+	}
+	for i, e := range list {
+		if got := [2]string{strings.Join(e.ids, ", "), e.reason()}; got != want[i] {
+			t.Errorf("line %d: %q, want %q", i+1, got, want[i])
+		}
+	}
+	g, lines := layoutOf(t).gridOf(sheetCompare), map[string]int{}
+	for _, row := range g.rows {
+		if len(row) >= listText {
+			if reason, _ := row[listText-1].value.(string); strings.HasPrefix(reason, "at best dearer than ") {
+				lot, _ := row[0].value.(string)
+				if lines[lot]++; lines[lot] > 1 {
+					t.Errorf("%s has another line: %s", lot, reason)
+				}
+			}
+		}
+	}
+	if len(lines) == 0 {
+		t.Error("the demonstration has no such line")
+	}
+}
