@@ -29,7 +29,7 @@ func (l *layout) checks() *grid {
 	g := newGrid(sheetChecks, "Found and expected must agree within the tolerance. The sum of the flags is 0 when all checks hold.",
 		tabCheck, cell{look: message, formula: "check_message", value: checksHold}, 10, 74, 15, 15, 15, 12, 12, 8, 15)
 	next := frameRows + 6
-	g.frozenRows = next + 1 // the headings, which both blocks share
+	g.frozenRows = next + 1 // the headings, which both blocks have
 	unedited := rows{1, 0}
 	if tests := l.programTests(); len(tests) > 0 { // the short block first: only the last runs on
 		first := g.table(next, "Checked against the program while no input and no price is edited", checkColumns)

@@ -35,7 +35,7 @@ func drawn(v float64, unit, format string) cell {
 }
 
 func (l *layout) ranges() *grid {
-	lot, route := l.keyWidths(47) // questions and points stand in the column of routes
+	lot, route := l.keyWidths(61) // questions and points stand in the column of routes, and two charts on a page
 	g := newGrid(sheetRanges, "How sure the figures are, what moves them, and where the choice turns. Values of the program; ranks and the cost against litres a month follow the prices.",
 		tabResult, checkCell(), lot, route, 10.5, 12, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 10.5, 8, 8)
 	g.printColumns = rangeRank

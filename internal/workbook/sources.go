@@ -16,7 +16,7 @@ var weakKinds = []struct{ name, begin, off string }{
 
 func (l *layout) sources() *grid {
 	g := newGrid(sheetSources, "Where the numbers come from. Numbers that rest on memory, common practice or an assumption are listed first.",
-		tabText, checkCell(), 44, 20, 18, 22, 62)
+		tabText, checkCell(), 48, 20, 18, 22, 58)
 	g.mixed, g.frozenRows, g.flows = true, frameRows, true
 	left := l.report.Weak
 	for _, kind := range weakKinds {
