@@ -197,31 +197,41 @@ func (l *lifting) sure(start trial, most float64) (trial, bool, error) {
 }
 
 // worth is the run with the lowest aim that scores no more than most, to a few per cent
-// of the aim; without a route where none does.
+// of the aim; without a route where none does. The score is nearly straight over ln(aim):
+// the next aim is where a line through both ends comes to most, or near an end where that
+// hardly narrows them.
 func (l *lifting) worth(start trial, most float64) (trial, error) {
 	best, err := l.aimed(start, routes.LeastAimMgPerKg)
 	if err != nil || best.run.Route == nil || best.score <= most {
 		return best, err
 	}
 	low, high := best.run.WaterOut*1e6, l.t.Case.Goal()*1e6
+	lowScore, highScore := best.score, start.score
 	best = trial{}
 	for range aimTries {
-		aim := significant(math.Sqrt(low*high), 2)
-		if aim <= low || aim >= high {
+		share := math.Min(0.8, math.Max(0.2, (lowScore-most)/(lowScore-highScore)))
+		aim := significant(low*math.Pow(high/low, share), 2)
+		if aim <= low || aim >= high || high < low*aimsAlike {
 			break
 		}
 		found, err := l.aimed(start, aim)
 		if err != nil {
 			return trial{}, err
 		}
-		if found.run.Route != nil && found.score <= most {
-			best, high = found, aim
-		} else {
+		switch {
+		case found.run.Route == nil:
 			low = aim
+		case found.score <= most:
+			best, high, highScore = found, aim, found.score
+		default:
+			low, lowScore = aim, found.score
 		}
 	}
 	return best, nil
 }
+
+// aimsAlike is the ratio of two aims that are about the same.
+const aimsAlike = 1.03
 
 // aimed is a run with its last step sized for an aim (mg/kg); without a route where
 // it cannot be had or misses the limit.

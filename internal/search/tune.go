@@ -324,7 +324,7 @@ func refined(f func(u []float64) float64, lo, hi []float64, most int) {
 		}
 		return f(u)
 	}
-	limits := &optimize.Settings{FuncEvaluations: most, Converger: &optimize.FunctionConverge{Relative: 1e-7, Iterations: 8}}
+	limits := &optimize.Settings{FuncEvaluations: most, Converger: &optimize.FunctionConverge{Relative: 1e-5, Iterations: 5}}
 	// The best point seen is kept by f itself; running into the limit is no failure.
 	_, _ = optimize.Minimize(optimize.Problem{Func: inside}, make([]float64, len(lo)), limits, &optimize.NelderMead{SimplexSize: 1})
 }

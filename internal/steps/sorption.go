@@ -50,16 +50,19 @@ type sorption struct {
 	feed      Lot
 	tempK     float64
 	psatWater float64
+	pair      thermo.Isothermal
+	shift     float64 // of the pair's model at tempK
 }
 
 func newSorption(m *thermo.Mixture, feed Lot, sorbent Sorbent, tempK float64) sorption {
-	return sorption{m, sorbent, feed, tempK, m.Water.VapourPressurePa.At(tempK)}
+	return sorption{m, sorbent, feed, tempK, m.Water.VapourPressurePa.At(tempK), m.At(tempK), m.NRTL.Shift.At(tempK)}
 }
 
 // pressure of water over a solution. Free water beside the solution holds the
 // activity at one.
 func (s *sorption) pressure(water float64) float64 {
-	return math.Min(1, s.m.Activity(water, s.tempK)) * s.psatWater
+	lnA, _ := s.pair.LnActivityOf(water/(1-water), s.shift)
+	return math.Exp(math.Min(0, lnA)) * s.psatWater
 }
 
 // loading of the sorbent in equilibrium with a solution of water (kg/kg).
@@ -74,7 +77,8 @@ var lnLeastWater = math.Log(leastWater)
 // floor is the solution in equilibrium with the sorbent's residual loading,
 // which no dose and no time can pass.
 func (s *sorption) floor() (float64, error) {
-	return s.balanced(math.Log(0.5), func(w float64) float64 { return s.loading(w) - s.sorbent.ResidualKgPerKg })
+	lnResidual := math.Log(s.sorbent.ResidualKgPerKg) // nearly straight over ln(water)
+	return s.balanced(math.Log(0.5), func(w float64) float64 { return math.Log(s.loading(w)) - lnResidual })
 }
 
 // balanced is the water at which a surplus that grows with the water is zero.
