@@ -89,6 +89,9 @@ func reason(r *study.Report, reach []*study.Route) string {
 		text += " The others lack a price and are not compared by cost."
 	default:
 		text += fmt.Sprintf(" The next best is %s, at %s%s.", reach[1].ID, value(reach[1]), more(reach))
+		if best.Miss != nil && r.Job.Objective == "cost" {
+			text += " Expected misses are counted in that."
+		}
 	}
 	return text
 }

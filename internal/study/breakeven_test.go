@@ -24,6 +24,13 @@ func worked(t *testing.T, name string) (*Report, *catalog.Catalog) {
 
 func workedWith(t *testing.T, name string, o Options) (*Report, *catalog.Catalog) {
 	t.Helper()
+	j, c := jobOf(t, name)
+	return compared(t, j, c, o), c
+}
+
+// jobOf reads a worked job, to be changed.
+func jobOf(t *testing.T, name string) (*job.Job, *catalog.Catalog) {
+	t.Helper()
 	c, err := catalog.Load()
 	if err != nil {
 		t.Fatal(err)
@@ -36,11 +43,16 @@ func workedWith(t *testing.T, name string, o Options) (*Report, *catalog.Catalog
 	if err != nil {
 		t.Fatal(err)
 	}
-	r, err := Compare(context.Background(), j, c, o)
+	return j, c
+}
+
+func compared(t *testing.T, j *job.Job, c *catalog.Catalog, o Options) *Report {
+	t.Helper()
+	r, err := Compare(t.Context(), j, c, o)
 	if err != nil {
 		t.Fatal(err)
 	}
-	return r, c
+	return r
 }
 
 var workedJobs = []string{"saturated-toluene", "reclaimed-ethyl-acetate", "acetonitrile"}

@@ -98,11 +98,11 @@ func (s *chains) thin() {
 	}
 	s.bounds.CheapestFirst(s.open)
 	for _, b := range s.open[mostOpen:] {
-		id, also := b.Route.ID(), ", nor what begins so"
+		id, also := b.Route.ID(), " nor any chain that begins with it"
 		if s.ran[id] {
 			id, also = id+"+…", ""
 		}
-		s.lot.Excluded = append(s.lot.Excluded, routes.Excluded{ID: id, Reason: fmt.Sprintf("not looked at%s: %d beginnings as long cost less at least", also, mostOpen), Beaten: true})
+		s.lot.Excluded = append(s.lot.Excluded, routes.Excluded{ID: id, Reason: fmt.Sprintf("not run%s: there are %d of as many steps whose least cost is lower", also, mostOpen), Beaten: true})
 	}
 	s.open = s.open[:mostOpen]
 }

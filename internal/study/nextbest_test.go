@@ -2,7 +2,6 @@ package study
 
 import (
 	"maps"
-	"os"
 	"slices"
 	"strings"
 	"testing"
@@ -14,33 +13,6 @@ import (
 	"parch/internal/routes"
 	"parch/internal/search"
 )
-
-// jobOf reads a worked job, to be changed.
-func jobOf(t *testing.T, name string) (*job.Job, *catalog.Catalog) {
-	t.Helper()
-	c, err := catalog.Load()
-	if err != nil {
-		t.Fatal(err)
-	}
-	data, err := os.ReadFile("../../testdata/jobs/" + name + ".yaml")
-	if err != nil {
-		t.Fatal(err)
-	}
-	j, err := job.Read(name, data, c)
-	if err != nil {
-		t.Fatal(err)
-	}
-	return j, c
-}
-
-func compared(t *testing.T, j *job.Job, c *catalog.Catalog, o Options) *Report {
-	t.Helper()
-	r, err := Compare(t.Context(), j, c, o)
-	if err != nil {
-		t.Fatal(err)
-	}
-	return r
-}
 
 // Of all usual routes of a lot, each tuned and made sure without leaving any out, none but
 // the best costs less than the next best of the ranking.

@@ -232,7 +232,7 @@ func (p *shelf) emissions(r *Report) {
 	}
 	for _, key := range slices.Sorted(maps.Keys(keys)) {
 		if v, ok := p.catalog.Emissions[key]; ok {
-			p.value("emission factor "+key, v)
+			p.value("emission factor of "+strings.Replace(key, "/", " ", 1), v)
 		}
 	}
 }
