@@ -22,6 +22,11 @@ func TestPagesCutNothing(t *testing.T) {
 			last := slices.IndexFunc(ends, func(row int) bool { return len(g.parts) > 0 && row > g.parts[len(g.parts)-1] })
 			if last >= 0 && len(g.breaks) < len(ends) {
 				ends = ends[:last] // the last part runs on without breaks
+				for row := g.parts[len(g.parts)-1] + 1; row <= g.last(); row++ {
+					if named(g, row) {
+						t.Errorf("%s: the name of a block in row %d of %s may end a page", k.name, row, g.name)
+					}
+				}
 			}
 			if len(g.parts) > 0 && !slices.Equal(ends, g.breaks) {
 				t.Errorf("%s: pages of %s start at %v, breaks are at %v", k.name, g.name, ends, g.breaks)

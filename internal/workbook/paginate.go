@@ -10,7 +10,7 @@ const mostUsed = 0.7
 // before if it fits there, else it starts a page. A part that is longer than a page, and
 // each of a sheet that flows, runs on, and is broken where the least that a page holds is
 // full: readers differ in what it holds, and would differ in what follows. The last part is
-// left to the reader.
+// left to the reader, unless it has several blocks: their headings stay with their entries.
 func (g *grid) paginate() {
 	if len(g.parts) == 0 {
 		return
@@ -42,7 +42,7 @@ func (g *grid) paginate() {
 				used = titles
 			}
 		}
-		if i+1 == len(starts) && g.chartsWithin(start, end) == 0 {
+		if i+1 == len(starts) && g.chartsWithin(start, end) == 0 && !g.blockWithin(start+1, end) {
 			break
 		}
 		used = g.runOn(start, end, used, page, titles)
@@ -54,7 +54,7 @@ func (g *grid) paginate() {
 func (g *grid) runOn(first, last int, used, page, titles float64) float64 {
 	for row := first; row <= last; row++ {
 		together := row
-		if row <= len(g.rows) && len(g.rows[row-1]) > 0 && g.rows[row-1][0].look == block {
+		if g.isBlock(row) {
 			together = min(row+2, last)
 		}
 		if used+g.span(row, together) > page && used > titles {
@@ -64,6 +64,20 @@ func (g *grid) runOn(first, last int, used, page, titles float64) float64 {
 		used += g.span(row, row)
 	}
 	return used
+}
+
+// isBlock reports whether a row has the name of a block.
+func (g *grid) isBlock(row int) bool {
+	return row <= len(g.rows) && len(g.rows[row-1]) > 0 && g.rows[row-1][0].look == block
+}
+
+func (g *grid) blockWithin(first, last int) bool {
+	for row := first; row <= last; row++ {
+		if g.isBlock(row) {
+			return true
+		}
+	}
+	return false
 }
 
 // chartsWithin is how far below a row the charts that stand on some rows reach, in
