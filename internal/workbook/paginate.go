@@ -6,11 +6,14 @@ func (g *grid) part(row int) { g.parts = append(g.parts, row) }
 // mostUsed is the share of a page above which a part that runs on starts the next one.
 const mostUsed = 0.7
 
+// entryRow is how far below the name of a block its first entry stands.
+const entryRow = 2
+
 // paginate sets the page breaks of a sheet with parts. A part stays on the page of the one
 // before if it fits there, else it starts a page. A part that is longer than a page, and
 // each of a sheet that flows, runs on, and is broken where the least that a page holds is
-// full: readers differ in what it holds, and would differ in what follows. The last part is
-// left to the reader, unless it has several blocks: their headings stay with their entries.
+// full: readers differ in what it holds, and would differ in what follows. The last
+// block is left to the reader, but for its headings, which stay with its first entry.
 func (g *grid) paginate() {
 	if len(g.parts) == 0 {
 		return
@@ -42,8 +45,8 @@ func (g *grid) paginate() {
 				used = titles
 			}
 		}
-		if i+1 == len(starts) && g.chartsWithin(start, end) == 0 && !g.blockWithin(start+1, end) {
-			break
+		if i+1 == len(starts) && g.chartsWithin(start, end) == 0 {
+			end = min(end, g.lastBlock(start, end)+entryRow)
 		}
 		used = g.runOn(start, end, used, page, titles)
 	}
@@ -55,7 +58,7 @@ func (g *grid) runOn(first, last int, used, page, titles float64) float64 {
 	for row := first; row <= last; row++ {
 		together := row
 		if g.isBlock(row) {
-			together = min(row+2, last)
+			together = min(row+entryRow, last)
 		}
 		if used+g.span(row, together) > page && used > titles {
 			g.breaks = append(g.breaks, row)
@@ -71,13 +74,15 @@ func (g *grid) isBlock(row int) bool {
 	return row <= len(g.rows) && len(g.rows[row-1]) > 0 && g.rows[row-1][0].look == block
 }
 
-func (g *grid) blockWithin(first, last int) bool {
-	for row := first; row <= last; row++ {
+// lastBlock is the row with the name of the last block within some rows; the first of them
+// where they have none.
+func (g *grid) lastBlock(first, last int) int {
+	for row := last; row > first; row-- {
 		if g.isBlock(row) {
-			return true
+			return row
 		}
 	}
-	return false
+	return first
 }
 
 // chartsWithin is how far below a row the charts that stand on some rows reach, in
