@@ -24,9 +24,11 @@ func (l *layout) compare() *grid {
 	l.compareBlock(g)
 	l.compareCharts(g)
 	g.part(g.below())
+	g.listsFrom = g.below()
 	l.excludedBlock(g)
 	l.cautionBlock(g)
 	l.noteBlock(g)
+	g.paginate() // lists grow by the headings that are repeated, and Checks looks at every row
 	return g
 }
 

@@ -113,6 +113,7 @@ type grid struct {
 	merged        []merge
 	flows         bool  // parts run on over pages as soon as they begin on one
 	parts         []int // rows at which parts start that are to stay on one printed page
+	listsFrom     int   // from this row on there are lists; 0: none
 	breaks        []int // rows that start a printed page
 	links         []jump
 	boldRows      rows // in which a mark can make the first columns bold

@@ -2,6 +2,7 @@ package workbook
 
 import (
 	"slices"
+	"strings"
 	"testing"
 )
 
@@ -159,6 +160,61 @@ func TestReadMeCutsNoList(t *testing.T) {
 		}
 		if len(g.breaks) > 1 {
 			t.Errorf("%s: pages start at %v", k.name, g.breaks)
+		}
+	}
+}
+
+// Each page of lists begins with the name of the list that goes on there, or of the one that
+// starts, and with its headings: a column without its heading cannot be read.
+func TestListsRepeatTheirHeadings(t *testing.T) {
+	pages := 0
+	for _, k := range everyKind(t) {
+		for _, g := range k.layout.grids {
+			if g.name != sheetCompare && g.name != sheetSources {
+				continue
+			}
+			name := ""
+			for row := g.listsFrom; row <= g.last(); row++ {
+				if !named(g, row) {
+					continue
+				}
+				before, again := strings.CutSuffix(g.rows[row-1][0].value.(string), " (continued)")
+				if again && before != name {
+					t.Errorf("%s: row %d of %s goes on with %q after %q", k.name, row, g.name, before, name)
+				}
+				name = before
+			}
+			for _, row := range g.pageEnds() {
+				if row < g.listsFrom-1 {
+					continue
+				}
+				pages++
+				if !named(g, row) {
+					row++ // a blank row leads the page
+				}
+				if !named(g, row) || g.rows[row][0].look != heading || g.rows[row][1].look != heading {
+					t.Errorf("%s: the page of %s that starts at row %d has no headings", k.name, g.name, row)
+				}
+			}
+		}
+	}
+	if pages < 10 {
+		t.Errorf("only %d pages of lists", pages)
+	}
+}
+
+// Lists move down by the headings that are repeated: nothing else in the workbook may count
+// on their rows.
+func TestListsAreText(t *testing.T) {
+	for _, k := range everyKind(t) {
+		for _, g := range k.layout.grids {
+			for row := max(g.listsFrom, 1); g.listsFrom > 0 && row <= g.last(); row++ {
+				for i, c := range g.rows[row-1] {
+					if c.formula != "" || c.isNumber() || c.look == input {
+						t.Errorf("%s: %s of %s is more than text", k.name, at(i+1, row), g.name)
+					}
+				}
+			}
 		}
 	}
 }

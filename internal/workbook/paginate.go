@@ -1,5 +1,10 @@
 package workbook
 
+import (
+	"slices"
+	"strings"
+)
+
 // part marks the row at which a part starts that is to stay on one printed page.
 func (g *grid) part(row int) { g.parts = append(g.parts, row) }
 
@@ -13,21 +18,24 @@ const entryRow = 2
 // before if it fits there, else it starts a page. A part that is longer than a page, and
 // each of a sheet that flows, runs on, and is broken where the least that a page holds is
 // full: readers differ in what it holds, and would differ in what follows. The last
-// block is left to the reader, but for its headings, which stay with its first entry.
+// block is left to the reader, but for its headings, which stay with its first entry;
+// lists repeat their headings on each page, so that they are broken to their end.
 func (g *grid) paginate() {
-	if len(g.parts) == 0 {
+	if len(g.parts) == 0 || len(g.breaks) > 0 {
 		return
 	}
 	page, titles := g.pageRoom()
-	used, first := 0.0, 1
+	used, start := 0.0, 1
 	if len(g.printed) > 0 {
-		used, first = titles, g.printed[0].first
+		used, start = titles, g.printed[0].first
 	}
-	starts := append([]int{first}, g.parts...)
-	for i, start := range starts {
+	for i := 0; i <= len(g.parts); i++ {
+		if i > 0 {
+			start = g.parts[i-1]
+		}
 		end := max(g.last(), g.drawnTo())
-		if i+1 < len(starts) {
-			end = starts[i+1] - 2 // a row between parts is blank
+		if i < len(g.parts) {
+			end = g.parts[i] - 2 // a row between parts is blank
 		}
 		if i > 0 {
 			whole := used+rowPoints+g.chartsWithin(start, end) <= page*chartFilled/pageFilled
@@ -45,7 +53,7 @@ func (g *grid) paginate() {
 				used = titles
 			}
 		}
-		if i+1 == len(starts) && g.chartsWithin(start, end) == 0 {
+		if i == len(g.parts) && !g.isList(end) && g.chartsWithin(start, end) == 0 {
 			end = min(end, g.lastBlock(start, end)+entryRow)
 		}
 		used = g.runOn(start, end, used, page, titles)
@@ -53,7 +61,7 @@ func (g *grid) paginate() {
 }
 
 // runOn fills pages with rows and returns what is used of the last. The name of a block, its
-// headings and its first entry stay together.
+// headings and its first entry stay together; a list has them again where it goes on.
 func (g *grid) runOn(first, last int, used, page, titles float64) float64 {
 	for row := first; row <= last; row++ {
 		together := row
@@ -61,12 +69,63 @@ func (g *grid) runOn(first, last int, used, page, titles float64) float64 {
 			together = min(row+entryRow, last)
 		}
 		if used+g.span(row, together) > page && used > titles {
+			if g.isList(row) && !g.isBlock(row) && !g.blankRow(row) {
+				last += g.headAgain(row)
+			}
 			g.breaks = append(g.breaks, row)
 			used = titles
 		}
 		used += g.span(row, row)
 	}
 	return used
+}
+
+// isList reports whether a row belongs to the lists of a sheet: text that no formula reads.
+func (g *grid) isList(row int) bool { return g.listsFrom > 0 && row >= g.listsFrom }
+
+// headAgain puts the name of the list that a row belongs to and its headings above that row,
+// and returns how many rows these take.
+func (g *grid) headAgain(row int) (added int) {
+	name := g.lastBlock(g.listsFrom, row)
+	added = entryRow
+	g.insert(row, added)
+	g.put(1, row, text(block, strings.TrimSuffix(g.rows[name-1][0].value.(string), continued)+continued))
+	for i, c := range g.rows[name] {
+		g.put(i+1, row+1, c)
+	}
+	for _, m := range g.merged {
+		if m.row == name+1 {
+			g.merged = append(g.merged, merge{row + 1, m.first, m.last})
+		}
+	}
+	return added
+}
+
+// continued stands behind the name of a list that began on a page before.
+const continued = " (continued)"
+
+// insert makes room for some rows of a list. What lists hold moves; a formula, a mark or an
+// input stands in none.
+func (g *grid) insert(row, count int) {
+	g.rows = slices.Insert(g.rows, row-1, make([][]cell, count)...)
+	for i := range g.merged {
+		if g.merged[i].row >= row {
+			g.merged[i].row += count
+		}
+	}
+	for i := range g.parts {
+		if g.parts[i] >= row {
+			g.parts[i] += count
+		}
+	}
+	heights := make(map[int]float64, len(g.heights))
+	for r, h := range g.heights {
+		if r >= row {
+			r += count
+		}
+		heights[r] = h
+	}
+	g.heights = heights
 }
 
 // isBlock reports whether a row has the name of a block.

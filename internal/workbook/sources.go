@@ -18,6 +18,7 @@ func (l *layout) sources() *grid {
 	g := newGrid(sheetSources, "Where the numbers come from. Numbers that rest on memory, common practice or an assumption are listed first.",
 		tabText, checkCell(), 48, 20, 18, 22, 58)
 	g.mixed, g.frozenRows, g.flows = true, frameRows, true
+	g.listsFrom = g.next()
 	left := l.report.Weak
 	for _, kind := range weakKinds {
 		var rest []study.Weak
