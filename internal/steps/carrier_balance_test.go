@@ -125,3 +125,32 @@ func TestCarrierCourseKeepsTheClock(t *testing.T) {
 		t.Errorf("%g h of reflux: the case is one of the shortest reflux no more", reflux)
 	}
 }
+
+// A pot that is handed over boiling takes no heat to boil, to the last digit, and one that
+// is a kelvin colder does.
+func TestStrippingStartsHot(t *testing.T) {
+	for _, k := range [][2]string{{"n-n-dimethylformamide", "toluene"}, {"acetonitrile", "dichloromethane"}, {"ethanol", "cyclohexane"}, {"1-butanol", "toluene"}} {
+		eq := carrierEquilibrium(t, k[0], k[1], 10)
+		for _, water := range []float64{0.01, 0.02, 0.03, 0.05} {
+			feed := carrierLot(eq, 12, water)
+			plan := withColumn(feed, 0.4, 6)
+			plan.Goal = water / 10
+			trap, err := steps.RunCarrierTrap(eq, feed, plan, rig("either"), rules)
+			if err != nil {
+				t.Fatal(k, err)
+			}
+			heatUp := func(lot steps.Lot) float64 {
+				strip, err := steps.StripCarrier(eq, lot, plan, rig("either"), rules)
+				if err != nil {
+					t.Fatal(k, err)
+				}
+				return strip.Figure("heat-up, each charge")
+			}
+			colder := trap.Out
+			colder.TempK--
+			if hot, cold := heatUp(trap.Out), heatUp(colder); hot != 0 || cold < 1e-3 {
+				t.Errorf("%v, %g %% of water: a boiling pot takes %g h to heat up, one that is 1 K colder %g h", k, 100*water, hot, cold)
+			}
+		}
+	}
+}

@@ -205,6 +205,7 @@ func (r *refluxing) start(feed Lot) error {
 	if r.fromK = math.Min(feed.TempK, r.startK); feed.TempK == 0 {
 		r.fromK = r.rig.RoomK
 	}
+	r.fromK = boilingAlready(r.fromK, r.startK)
 	r.potK = r.startK
 	r.heatUpJ = r.sensible(r.s.pot, r.fromK, r.startK)
 	charge := hotCharge{r.heatUpJ, total(r.s.pot) * r.m.MolarVolume(whole, r.rig.RoomK), r.startK - r.rig.RoomK}

@@ -238,6 +238,7 @@ func (d *drawing) start(feed Lot) error {
 	if d.tempK == 0 {
 		d.tempK = d.rig.RoomK
 	}
+	d.tempK = boilingAlready(d.tempK, d.startK)
 	if err := d.checkTemperatures(); err != nil {
 		return err
 	}
@@ -249,6 +250,19 @@ func (d *drawing) start(feed Lot) error {
 		return err
 	}
 	return d.choose()
+}
+
+// sameBoilingK is within what two boiling points of one liquid agree: each is found to
+// 0.1 microkelvin.
+const sameBoilingK = 1e-6
+
+// boilingAlready is the temperature of a lot that is handed over hot: no heat is told that
+// only brings one figure for its boiling point to the other.
+func boilingAlready(tK, boilK float64) float64 {
+	if math.Abs(tK-boilK) < sameBoilingK {
+		return boilK
+	}
+	return tK
 }
 
 // choose tells the product from the waste, or says that the lot cannot dry.
