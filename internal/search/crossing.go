@@ -27,13 +27,25 @@ type Crossing struct {
 // CloseEnough is the share by which two costs may differ at a break-even.
 const CloseEnough = 1e-4
 
-// tolerance of ln(x) at a root.
-const lnTolerance = 1e-8
+// Tolerances of ln(x) at a root: as it is told, and where it is asked for again.
+const lnTolerance, lnRoughly = 1e-8, 5e-3
 
 // Cross finds where the order of two sides changes between lo and hi: at points
 // spaced evenly in the logarithm, and at others between them, the sign of the difference is
 // looked for; the change next to now is solved for by Brent's method.
 func Cross(d Duel, lo, hi, now float64, points int, others ...float64) (Crossing, error) {
+	return cross(d, lnTolerance, lo, hi, now, points, others...)
+}
+
+// CrossRoughly is Cross to half a per cent of the figure. Whether the costs meet there is
+// not told.
+func CrossRoughly(d Duel, lo, hi, now float64, points int, others ...float64) (Crossing, error) {
+	c, err := cross(d, lnRoughly, lo, hi, now, points, others...)
+	c.Step = false
+	return c, err
+}
+
+func cross(d Duel, tolerance, lo, hi, now float64, points int, others ...float64) (Crossing, error) {
 	var failed error
 	gap := func(lnX float64) float64 {
 		one, other, err := d(math.Exp(lnX))
@@ -69,7 +81,7 @@ func Cross(d Duel, lo, hi, now float64, points int, others ...float64) (Crossing
 	if at < 0 {
 		return never(xs, gaps)
 	}
-	root, err := thermo.Brent(gap, xs[at], xs[at+1], lnTolerance)
+	root, err := thermo.Brent(gap, xs[at], xs[at+1], tolerance)
 	if err = firstOf(failed, err); err != nil {
 		return Crossing{}, err
 	}

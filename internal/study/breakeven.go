@@ -59,7 +59,11 @@ type sides struct {
 	one, other func(x float64) search.Field
 	floors     func(x float64) *floors
 	won, lost  search.Won // by the one and the other
+	asked      map[float64]outcome
 }
+
+// outcome of a duel.
+type outcome struct{ won, lost search.Won }
 
 // floors are what routes cost at a figure already asked for. The cost rises with
 // the figure, or falls with it: what was found on the cheap side is a floor.
@@ -92,6 +96,10 @@ func (f *floors) learn(x float64, cost map[string]float64) {
 }
 
 func (s *sides) duel(x float64) (one, other float64, err error) {
+	if o, ok := s.asked[x]; ok {
+		s.won, s.lost = o.won, o.lost
+		return s.won.AtLeast, s.lost.Cost, nil
+	}
 	known := s.floors(x)
 	low := known.at(x)
 	var found map[string]float64
@@ -103,6 +111,10 @@ func (s *sides) duel(x float64) (one, other float64, err error) {
 		return 0, 0, err
 	}
 	known.learn(x, found)
+	if s.asked == nil {
+		s.asked = map[float64]outcome{}
+	}
+	s.asked[x] = outcome{s.won, s.lost}
 	return s.won.AtLeast, s.lost.Cost, nil
 }
 

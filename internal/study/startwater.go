@@ -42,14 +42,28 @@ func (q *question) startWaters() BreakEven {
 	return b
 }
 
-// settled asks again and again, with routes made sure where the last answer lay.
+// settled asks again and again, with routes made sure where the last answer lay: roughly
+// as long as it lies far from where they were.
 func (b BreakEven) settled(s *starts) (*BreakEven, error) {
 	for {
-		found, c, err := b.families(&sides{
+		sides := &sides{
 			one:    func(x float64) search.Field { return s.field(x, isPreDried) },
 			other:  func(x float64) search.Field { return s.field(x, isDirect) },
 			floors: func(x float64) *floors { return s.nearest(x).floors },
-		}, s.figures()...)
+		}
+		if s.q.surely != nil && len(s.all) <= mostAnchors {
+			c, err := search.CrossRoughly(sides.duel, b.From, b.To, b.Now, points, s.figures()...)
+			if err != nil {
+				return nil, err
+			}
+			if !c.Never && !s.known(c.At, nearAnchor) {
+				if err := s.add(c.At); err != nil {
+					return nil, err
+				}
+				continue
+			}
+		}
+		found, c, err := b.families(sides, s.figures()...)
 		if err != nil || s.q.surely == nil {
 			return found, err
 		}
@@ -96,6 +110,9 @@ func (s *starts) nearest(x float64) *anchor {
 	return &s.all[at]
 }
 
+// known reports whether routes were made sure that near a start water.
+func (s *starts) known(x, within float64) bool { return away(s.nearest(x).x, x) < within }
+
 func (s *starts) figures() (all []float64) {
 	for _, a := range s.all {
 		all = append(all, a.x)
@@ -107,20 +124,19 @@ func (s *starts) figures() (all []float64) {
 // told: where it lies or, where one kind is ahead throughout, where the other is closest,
 // and the wettest start. settled where they are, or have been often enough.
 func (s *starts) next(c search.Crossing, wettest float64) (x float64, settled bool) {
-	known := func(x, within float64) bool { return away(s.nearest(x).x, x) < within }
 	switch {
 	case len(s.all) > mostAnchors:
 		return 0, true
-	case c.Never && c.Apart <= farApart && !known(c.Closest, nearAnchor):
+	case c.Never && c.Apart <= farApart && !s.known(c.Closest, nearAnchor):
 		return c.Closest, false
 	case c.Never && c.Apart > farApart:
 		return 0, true
 	case c.Never:
-		return wettest, known(wettest, nearAnchor)
+		return wettest, s.known(wettest, nearAnchor)
 	case c.Step:
-		return c.At, known(c.At, nearAnchor)
+		return c.At, s.known(c.At, nearAnchor)
 	}
-	return c.At, known(c.At, atAnchor)
+	return c.At, s.known(c.At, atAnchor)
 }
 
 // field of the routes that pass and are sure enough at a start water (mg/kg), each with
