@@ -11,7 +11,7 @@ func (l *Lot) Sure(run *routes.Run, limits Limits, level float64) (bool, error) 
 		return false, err
 	}
 	for i := t.seen; !t.done; i++ {
-		t.decided(f.water[i])
+		t.decided(limits.Met(f.water[i]))
 	}
 	return t.reached(t.met), nil
 }
@@ -28,13 +28,10 @@ type tally struct {
 
 func (t *tally) reached(met int) bool { return float64(met)/float64(t.n) >= t.level }
 
-// decided takes note of the water (kg/kg) of the next draw. A nil tally is never decided.
-func (t *tally) decided(water float64) bool {
-	if t == nil {
-		return false
-	}
+// decided takes note of the next draw.
+func (t *tally) decided(met bool) bool {
 	t.seen++
-	if t.limits.Met(water) {
+	if met {
 		t.met++
 	}
 	t.done = t.reached(t.met) || !t.reached(t.met+t.n-t.seen)

@@ -153,7 +153,18 @@ func (f *flow) dryIn(order []int, leave func(i int, a *steps.Aside) (water float
 			}
 			f.water[i] = water
 		}
-		if f.tally.decided(f.water[i]) {
+		if f.tally != nil && f.tally.decided(f.tally.limits.Met(f.water[i])) {
+			return
+		}
+	}
+}
+
+// count goes through the draws in an order until it is told whether enough of them are
+// kept to the limits.
+func (f *flow) count(order []int, keep func(i int, a *steps.Aside) bool) {
+	for _, i := range order {
+		a := f.lot.asides[i]
+		if f.tally.decided(!math.IsInf(f.water[i], 1) && f.kg[i] > 0 && keep(i, &a)) {
 			return
 		}
 	}
@@ -199,7 +210,16 @@ func (f *flow) soak(place int) (turn, error) {
 	}
 	rate := f.lot.stillRateOr(f.run.Settings.StirredAt(f.run.Route, place))
 	loading, residual := f.lot.loading(f.run.Route[place].Agent), f.lot.residualOn(f.run.Route[place].Agent)
-	f.dryIn(f.lot.wettest(f.run.Route[place].Agent), func(i int, a *steps.Aside) (float64, bool) {
+	order := f.lot.wettest(f.run.Route[place].Agent)
+	if f.tally != nil {
+		least, most := f.tally.limits.ends()
+		f.count(order, func(i int, a *steps.Aside) bool {
+			a.Loading, a.ResidualKgPerKg, a.Rate = loading[i], residual[i], rate[i]
+			return quick.Leaves(f.water[i], f.kg[i], a, least, most)
+		})
+		return turn{}, nil
+	}
+	f.dry(func(i int, a *steps.Aside) (float64, bool) {
 		a.Loading, a.ResidualKgPerKg, a.Rate = loading[i], residual[i], rate[i]
 		return quick.Water(f.water[i], f.kg[i], a), true
 	})

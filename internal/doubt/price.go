@@ -33,8 +33,12 @@ type Limits struct{ Least, Most float64 }
 
 // Met reports whether a product keeps to them.
 func (s Limits) Met(water float64) bool {
-	return water <= s.Most*(1+1e-9) && water >= s.Least*(1-1e-9)
+	least, most := s.ends()
+	return water <= most && water >= least
 }
+
+// ends with a margin for the arithmetic.
+func (s Limits) ends() (least, most float64) { return s.Least * (1 - 1e-9), s.Most * (1 + 1e-9) }
 
 // Chance is the share of the draws in which a plan keeps to the limits.
 func (l *Lot) Chance(run *routes.Run, limits Limits) (float64, error) {

@@ -200,7 +200,14 @@ func (c *Case) aim(s Settings) float64 {
 // QuickSoak is the soak of a run at a place, for many draws.
 func (c *Case) QuickSoak(run *Run, place int) (*steps.QuickSoak, error) {
 	o, choice := &run.Outcomes[place], run.Settings.at(run.Route, place)
-	return steps.NewQuickSoak(c.Mixture, o.In, o.AgentKg, choice.soakHours*3600, choice.charges, c.sorbent(o.Agent, choice.after), c.soakRigOf(choice))
+	return steps.NewQuickSoak(c.Mixture, o.In, o.AgentKg, choice.soakHours*3600, choice.charges, c.tabulated(o.Agent, choice.after), c.soakRigOf(choice))
+}
+
+// tabulated is a sorbent with what it holds at room temperature as a table.
+func (c *Case) tabulated(agent, after string) steps.Sorbent {
+	s := c.sorbent(agent, after)
+	s.Uptakes = c.site.uptakes.Of(agent, func() *steps.Uptakes { return steps.UptakesOf(c.Mixture, s, c.Job.Site.RoomK) })
+	return s
 }
 
 // StirredAt reports whether the soak of a run at a place is stirred.
@@ -209,7 +216,7 @@ func (s Settings) StirredAt(r Route, place int) bool { return s.at(r, place).sti
 // QuickColumn is the column of a run at a place, for many draws.
 func (c *Case) QuickColumn(run *Run, place int) (*steps.QuickColumn, error) {
 	o, choice := &run.Outcomes[place], run.Settings.at(run.Route, place)
-	return steps.NewQuickColumn(c.Mixture, o.In, o.AgentKg, c.sorbent(o.Agent, choice.after), c.columnRig(c.Catalog.Apparatus[o.Apparatus]))
+	return steps.NewQuickColumn(c.Mixture, o.In, o.AgentKg, c.tabulated(o.Agent, choice.after), c.columnRig(c.Catalog.Apparatus[o.Apparatus]))
 }
 
 // QuickSalt is the salt of a run at a place, for many draws.

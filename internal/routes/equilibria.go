@@ -3,6 +3,7 @@ package routes
 import (
 	"sync"
 
+	"parch/internal/memo"
 	"parch/internal/steps"
 )
 
@@ -13,6 +14,7 @@ type equilibria struct {
 	traps     map[float64]*steps.TrapEquilibrium // by receiver temperature, K
 	carriers  map[string]carrierEquilibrium      // by carrier
 	foreruns  map[float64]forerunEquilibrium     // by pressure, Pa
+	uptakes   memo.Map[string, *steps.Uptakes]   // at room temperature, by sorbent
 	saturated *solubility
 }
 

@@ -20,42 +20,55 @@ type Aside struct {
 	Left            float64      // factor on the share that a salt, on the water that a reactive agent leaves
 }
 
-// quickSorption is a sorbent in a solvent at one temperature. Its isotherm is held
-// as a table of ln q against ln p.
-type quickSorption struct {
-	pair             thermo.Isothermal
-	tempK, lnPsat    float64
-	lnShare          float64
+// Uptakes are the isotherm of a sorbent at one temperature as a table of ln q against
+// ln p.
+type Uptakes struct {
 	lnLowest, lnStep float64
 	lnLoading        []float64
 }
 
 const quickPoints = 600
 
-func newQuickSorption(s *sorption) *quickSorption {
-	q := &quickSorption{pair: s.m.At(s.tempK), tempK: s.tempK, lnPsat: math.Log(s.psatWater), lnShare: math.Log(s.sorbent.CapacityShare * orOne(s.sorbent.PoreShare))}
+// UptakesOf tabulates what a sorbent holds of the vapour over solutions in m.
+func UptakesOf(m *thermo.Mixture, sorbent Sorbent, tempK float64) *Uptakes {
+	lnPsat := math.Log(m.Water.VapourPressurePa.At(tempK))
 	const decades = 14
-	q.lnLowest = q.lnPsat - decades*math.Ln10
-	q.lnStep = decades * math.Ln10 / (quickPoints - 1)
+	u := &Uptakes{lnLowest: lnPsat - decades*math.Ln10, lnStep: decades * math.Ln10 / (quickPoints - 1)}
 	for i := range quickPoints {
-		q.lnLoading = append(q.lnLoading, math.Log(s.sorbent.Loading(math.Exp(q.lnLowest+q.lnStep*float64(i)), s.tempK)))
+		u.lnLoading = append(u.lnLoading, math.Log(sorbent.Loading(math.Exp(u.lnLowest+u.lnStep*float64(i)), tempK)))
 	}
-	return q
+	return u
+}
+
+// quickSorption is a sorbent in a solvent at one temperature.
+type quickSorption struct {
+	*Uptakes
+	pair          thermo.Isothermal
+	tempK, lnPsat float64
+	lnShare       float64
+}
+
+func newQuickSorption(s *sorption) *quickSorption {
+	known := s.sorbent.Uptakes
+	if known == nil {
+		known = UptakesOf(s.m, s.sorbent, s.tempK)
+	}
+	return &quickSorption{known, s.m.At(s.tempK), s.tempK, math.Log(s.psatWater), math.Log(s.sorbent.CapacityShare * orOne(s.sorbent.PoreShare))}
 }
 
 // ln of the uptake at ln p, and its slope. Below the table Henry's law holds.
-func (q *quickSorption) lnLoadingAt(lnP float64) (lnQ, slope float64) {
-	at := (lnP - q.lnLowest) / q.lnStep
+func (u *Uptakes) lnLoadingAt(lnP float64) (lnQ, slope float64) {
+	at := (lnP - u.lnLowest) / u.lnStep
 	i := int(max(0, min(at, quickPoints-2)))
-	slope = (q.lnLoading[i+1] - q.lnLoading[i]) / q.lnStep
-	return q.lnLoading[i] + slope*q.lnStep*(at-float64(i)), slope
+	slope = (u.lnLoading[i+1] - u.lnLoading[i]) / u.lnStep
+	return u.lnLoading[i] + slope*u.lnStep*(at-float64(i)), slope
 }
 
 // lnPAt is ln p at ln of the uptake.
-func (q *quickSorption) lnPAt(lnQ float64) float64 {
-	above := sort.SearchFloat64s(q.lnLoading, lnQ)
+func (u *Uptakes) lnPAt(lnQ float64) float64 {
+	above := sort.SearchFloat64s(u.lnLoading, lnQ)
 	i := max(0, min(above-1, quickPoints-2))
-	return q.lnLowest + q.lnStep*(float64(i)+(lnQ-q.lnLoading[i])/(q.lnLoading[i+1]-q.lnLoading[i]))
+	return u.lnLowest + u.lnStep*(float64(i)+(lnQ-u.lnLoading[i])/(u.lnLoading[i+1]-u.lnLoading[i]))
 }
 
 // lnUptake of a solution of ratio kg of water per kg of solvent, and its slope by
@@ -69,22 +82,26 @@ func (q *quickSorption) lnUptake(ratio, shift float64) (lnQ, slope float64) {
 	return lnQ + q.lnShare, slope * perRatio
 }
 
-// balance solves ln(load q(r)) = ln(take(r)) for ln r below lnHighest, where take
-// is what is left for the sorbent at r:
+// surplus of the sorbent over what is left for it at a solution of ratio exp(v), and its
+// slope by v:
 //
-//	take = (S (r_0 - r) + m q_0)/m
+//	ln(load q(r)) - ln(take(r)),  take = (S (r_0 - r) + m q_0)/m
 //
-// ok is false where the sorbent is wetter than the solution. Newton's method starts
-// where the sorbent has taken up all of the water and the solution is thin.
+// perSorbent is S/m.
+func (q *quickSorption) surplus(v, perSorbent, ratio0 float64, a *Aside, shift float64) (value, slope float64) {
+	r := math.Exp(v)
+	lnQ, d := q.lnUptake(r, shift)
+	take := perSorbent*(ratio0-r) + a.ResidualKgPerKg
+	return math.Log(a.Loading/take) + lnQ, d + perSorbent*r/take
+}
+
+// balance is the ratio below ratio0 at which the surplus is zero. ok is false where the
+// sorbent is wetter than the solution. Newton's method starts where the sorbent has taken
+// up all of the water and the solution is thin.
 func (q *quickSorption) balance(perSorbent, ratio0 float64, a *Aside, shift float64) (ratio float64, ok bool) {
-	lnHighest, lnLoad, all := math.Log(ratio0), math.Log(a.Loading), perSorbent*ratio0+a.ResidualKgPerKg
-	gap := func(v float64) (f, slope float64) {
-		r := math.Exp(v)
-		lnQ, d := q.lnUptake(r, shift)
-		take := all - perSorbent*r
-		return lnLoad + lnQ - math.Log(take), d + perSorbent*r/take
-	}
-	start := q.pair.Dilute(q.lnPAt(math.Log(all)-lnLoad-q.lnShare)-q.lnPsat, shift)
+	lnHighest := math.Log(ratio0)
+	gap := func(v float64) (value, slope float64) { return q.surplus(v, perSorbent, ratio0, a, shift) }
+	start := q.pair.Dilute(q.lnPAt(math.Log((perSorbent*ratio0+a.ResidualKgPerKg)/a.Loading)-q.lnShare)-q.lnPsat, shift)
 	lnRatio, _ := rising(gap, lnLeastWater, lnHighest, start)
 	if lnHighest-lnRatio < 1e-6 {
 		if f, _ := gap(lnHighest); f < 0 {
@@ -150,25 +167,81 @@ func NewQuickSoak(m *thermo.Mixture, feed Lot, doseKg, timeS float64, n int, sor
 	return s, nil
 }
 
+// met is a lot as it meets a charge.
+type met struct {
+	water, perSorbent, ratio0 float64
+	left                      float64 // of the way to the equilibrium, as a share
+	made                      float64 // kg/kg
+	on                        Aside   // with what the lots before have left on the charge
+}
+
+func (s *QuickSoak) meet(water, solventKg float64, a *Aside) met {
+	m := met{water: water, perSorbent: solventKg / s.doseKg, ratio0: water / (1 - water), on: *a}
+	dose := s.doseKg / (solventKg * (1/s.solventKgPerM3 + m.ratio0/s.waterKgPerM3)) // the same beads in a smaller lot are met more often
+	m.on.ResidualKgPerKg += (s.lots - 1) * m.perSorbent * m.ratio0
+	m.left, m.made = math.Exp(-s.bath.rate(dose)*a.Rate*s.timeS), s.bath.made(dose, s.timeS)
+	return m
+}
+
+// leave is what a charge leaves of the lot, kg/kg; ok is false where it is wetter.
+func (s *QuickSoak) leave(m *met, shift float64) (water float64, ok bool) {
+	ratio, ok := s.sorption.balance(m.perSorbent, m.ratio0, &m.on, shift)
+	if !ok {
+		return m.water, false
+	}
+	eq := ratio / (1 + ratio)
+	return eq + (m.water-eq)*m.left + m.made, true
+}
+
+// over is the lot as it meets the last of so many charges; ok is false where one is wetter.
+func (s *QuickSoak) over(charges int, water, solventKg float64, a *Aside, shift float64) (m met, ok bool) {
+	m = s.meet(water, solventKg, a)
+	for range charges - 1 {
+		if water, ok = s.leave(&m, shift); !ok {
+			return m, false
+		}
+		solventKg = math.Max(leastSolventKg, solventKg-s.heldKg)
+		m = s.meet(water, solventKg, a)
+	}
+	return m, true
+}
+
 // Water is what the soak leaves of a lot with solventKg and water (kg/kg).
 func (s *QuickSoak) Water(water, solventKg float64, a *Aside) float64 {
 	if s.doseKg == 0 {
 		return water
 	}
-	shift, charged := a.Shift.At(s.sorption.tempK), *a
-	for range s.charges {
-		perSorbent, ratio0 := solventKg/s.doseKg, water/(1-water)
-		dose := s.doseKg / (solventKg * (1/s.solventKgPerM3 + ratio0/s.waterKgPerM3)) // the same beads in a smaller lot are met more often
-		charged.ResidualKgPerKg = a.ResidualKgPerKg + (s.lots-1)*perSorbent*ratio0
-		ratio, ok := s.sorption.balance(perSorbent, ratio0, &charged, shift)
-		if !ok {
-			return water
-		}
-		eq := ratio / (1 + ratio)
-		water = eq + (water-eq)*math.Exp(-s.bath.rate(dose)*a.Rate*s.timeS) + s.bath.made(dose, s.timeS)
-		solventKg = math.Max(leastSolventKg, solventKg-s.heldKg)
+	shift := a.Shift.At(s.sorption.tempK)
+	if m, ok := s.over(s.charges, water, solventKg, a, shift); ok {
+		water, _ = s.leave(&m, shift)
+	} else {
+		water = m.water
 	}
 	return water
+}
+
+// Leaves reports whether Water lies between least and most, kg/kg. The equilibrium of the
+// last charge need not be found for that: it is lower than another water where the sorbent
+// holds more there than is left for it.
+func (s *QuickSoak) Leaves(water, solventKg float64, a *Aside, least, most float64) bool {
+	shift := a.Shift.At(s.sorption.tempK)
+	if s.doseKg == 0 || s.bath.rig.CondensationPerS > 0 {
+		water = s.Water(water, solventKg, a)
+		return water >= least && water <= most
+	}
+	m, ok := s.over(s.charges, water, solventKg, a, shift)
+	if !ok || m.left == 1 {
+		return m.water >= least && m.water <= most
+	}
+	drier := func(than float64) bool {
+		eq := (than - m.water*m.left) / (1 - m.left)
+		if eq < leastWater || eq >= m.water {
+			return eq >= m.water
+		}
+		surplus, _ := s.sorption.surplus(math.Log(eq/(1-eq)), m.perSorbent, m.ratio0, &m.on, shift)
+		return surplus >= 0
+	}
+	return drier(most) && !(least > 0 && drier(least))
 }
 
 const leastSolventKg = 1e-9 // of a lot that beads have soaked up

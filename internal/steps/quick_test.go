@@ -10,6 +10,8 @@ import (
 	"parch/internal/history"
 	"parch/internal/steps"
 	"parch/internal/thermo"
+
+	"pgregory.net/rapid"
 )
 
 // asides are draws: as planned, and with everything off at once.
@@ -441,5 +443,46 @@ func BenchmarkIsothermInversion(b *testing.B) {
 	a := asides(0.02)[0]
 	for b.Loop() {
 		_ = quick.Water(400e-6, feed.SolventKg, &a)
+	}
+}
+
+// What is told of a limit without the equilibrium is what the water left says of it.
+func TestQuickSoakLeavesWhatItsWaterSays(t *testing.T) {
+	m, rig, sieve := mixture(t, "tetrahydrofuran"), bottle(t, "tetrahydrofuran", 0.25), sieve3A(t, 0.02)
+	wettest := litres(m, 18, 2000e-6)
+	yes, no := 0, 0
+	rapid.Check(t, func(t *rapid.T) {
+		rig := rig
+		charges := rapid.IntRange(1, 3).Draw(t, "charges")
+		if charges == 1 {
+			rig.Lots = rapid.IntRange(1, 4).Draw(t, "lots")
+		}
+		if rapid.Bool().Draw(t, "makes water") {
+			rig.Lots, rig.CondensationPerS = 1, 1e-9
+		}
+		doseKg, hours := rapid.Float64Range(0, 4).Draw(t, "dose"), rapid.Float64Range(0, 100).Draw(t, "hours")
+		quick, err := steps.NewQuickSoak(m, wettest, doseKg, hours*3600, charges, sieve, rig)
+		if err != nil {
+			t.Fatal(err)
+		}
+		a := asides(0.02)[rapid.IntRange(0, 2).Draw(t, "draw")]
+		water, kg := math.Exp(rapid.Float64Range(math.Log(1e-7), math.Log(2000e-6)).Draw(t, "ln water")), rapid.Float64Range(5, 20).Draw(t, "kg")
+		left := quick.Water(water, kg, &a)
+		for _, limit := range []float64{left * (1 - 1e-6), left * (1 + 1e-6), left / 3, left * 3, 1e-6, water} {
+			for _, least := range []float64{0, limit / 2, limit * (1 - 1e-6)} {
+				want := left <= limit && left >= least
+				if want {
+					yes++
+				} else {
+					no++
+				}
+				if got := quick.Leaves(water, kg, &a, least, limit); got != want && math.Abs(left/limit-1) > 1e-8 && math.Abs(left-least) > 1e-8*left {
+					t.Fatalf("%g left of %g; between %g and %g: %v", left, water, least, limit, got)
+				}
+			}
+		}
+	})
+	if yes == 0 || no == 0 {
+		t.Errorf("%d within, %d outside", yes, no)
 	}
 }

@@ -14,6 +14,7 @@ import (
 type Sorbent struct {
 	Key, Name       string                                      // Name: "" is Key
 	Loading         func(partialPressurePa, tK float64) float64 // kg water per kg, at equilibrium
+	Uptakes         *Uptakes                                    // Loading as a table, where there is one already; nil: there is none
 	DataFromPa      float64                                     // below this water pressure Loading extrapolates; 0: not stated
 	ResidualKgPerKg float64                                     // from the sieve's history
 	CapacityShare   float64                                     // of a new sieve's capacity
