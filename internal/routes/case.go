@@ -31,6 +31,8 @@ type Case struct {
 	known *memo.Map[stepKey, result] // nil: nothing is remembered
 	drawn *Drawn                     // nil: everything as it was planned
 	plan  *Run                       // whose doses are weighed out; nil: doses follow from the goal
+
+	outline bool // soaks are given in outline
 }
 
 // NewCase prepares a lot.

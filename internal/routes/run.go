@@ -22,6 +22,14 @@ func (c *Case) Run(r Route, s Settings) (Run, error) {
 	return c.RunTo(r, s, c.aim(s))
 }
 
+// RunOutline is Run with soaks in outline (steps.SoakRig), for many runs of which few are
+// told of.
+func (c *Case) RunOutline(r Route, s Settings) (Run, error) {
+	outline := *c
+	outline.outline = true
+	return outline.Run(r, s)
+}
+
 // RunTo is Run with a goal (kg/kg) for the last step of its own.
 func (c *Case) RunTo(r Route, s Settings, last float64) (Run, error) {
 	run := Run{Route: r, Settings: s, AgentKg: map[string]float64{}, Outcomes: make([]steps.Outcome, 0, len(r)), Uses: make([]StageUse, 0, 12*len(r)+8)}

@@ -37,7 +37,7 @@ func (c *Case) stirrerKWh(choice choice) float64 {
 // soakRigOf is the vessel of a soak of a route.
 func (c *Case) soakRigOf(choice choice) steps.SoakRig {
 	rig := c.soakRig(choice.stirred)
-	rig.Lots = choice.lots
+	rig.Lots, rig.Outline = choice.lots, c.outline
 	return rig
 }
 

@@ -43,7 +43,7 @@ func (t *Tuner) Assured(r routes.Route, run routes.Run, a Assurance) (routes.Run
 	if err != nil || best.run.Route == nil {
 		return run, err
 	}
-	return best.run, nil
+	return t.whole(best.run)
 }
 
 // ended is the best sure run with the hand-overs of a run; without a route where none is.
@@ -121,7 +121,7 @@ func (l *lifting) starts(run routes.Run, stands []stand, meetings []meeting) ([]
 			s.SoakHours[last], s.Stirred[last] = stand.hours, stand.stirred
 			setLotsOverCharge(&s, last, m.lots)
 			setCharges(&s, last, m.charges)
-			other, err := l.t.Run(l.route, s)
+			other, err := l.t.outline(l.route, s)
 			if err == nil {
 				err = l.t.inTime(&other)
 			}
@@ -238,7 +238,7 @@ const aimsAlike = 1.03
 func (l *lifting) aimed(start trial, aim float64) (trial, error) {
 	s := cloned(start.run.Settings)
 	s.AimMgPerKg = aim
-	run, err := l.t.Run(l.route, s)
+	run, err := l.t.outline(l.route, s)
 	if err == nil {
 		err = l.t.inTime(&run)
 	}

@@ -65,7 +65,7 @@ func (l *lifting) handedOverAnew(best trial) (trial, error) {
 	}
 	s := cloned(g.best.run.Settings)
 	s.AimMgPerKg = 0
-	run, err := l.t.Run(l.route, s)
+	run, err := l.t.outline(l.route, s)
 	if err != nil || !run.Meets {
 		return trial{}, nil
 	}

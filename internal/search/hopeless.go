@@ -22,7 +22,7 @@ func (l *lifting) hopeless(run routes.Run, stands []stand) (bool, error) {
 		setLotsOverCharge(&s, last, 1)
 		setCharges(&s, last, slices.Max(chargesTried))
 		s.AimMgPerKg = routes.LeastAimMgPerKg
-		strongest, err := l.t.Run(l.route, s)
+		strongest, err := l.t.outline(l.route, s)
 		if err != nil {
 			return false, nil // tells nothing
 		}

@@ -43,19 +43,35 @@ type Tuner struct {
 
 // Run carries out a route as a plan and arranges its uses as the site pays for them.
 func (t *Tuner) Run(r routes.Route, s routes.Settings) (routes.Run, error) {
+	return t.carryOut(t.Case.Run, r, s)
+}
+
+// outline is Run with soaks in outline.
+func (t *Tuner) outline(r routes.Route, s routes.Settings) (routes.Run, error) {
+	return t.carryOut(t.Case.RunOutline, r, s)
+}
+
+// whole is a run in outline as Run gives it.
+func (t *Tuner) whole(outline routes.Run) (routes.Run, error) {
+	run, err := t.Run(outline.Route, outline.Settings)
+	run.Shortened = outline.Shortened
+	return run, err
+}
+
+func (t *Tuner) carryOut(run func(routes.Route, routes.Settings) (routes.Run, error), r routes.Route, s routes.Settings) (routes.Run, error) {
 	if t.Stop != nil {
 		if err := t.Stop(); err != nil {
 			return routes.Run{}, err
 		}
 	}
-	run, err := t.Case.Run(r, s)
+	done, err := run(r, s)
 	if err == nil {
-		err = routes.Idle(&run)
+		err = routes.Idle(&done)
 	}
 	if err == nil && t.Site != nil {
-		t.Site.Apply(&run, t.Case.Lot.BatchesPerYear)
+		t.Site.Apply(&done, t.Case.Lot.BatchesPerYear)
 	}
-	return run, err
+	return done, err
 }
 
 // Value of the objective, or of the mix of objectives, for a run.
@@ -134,7 +150,10 @@ func (t *Tuner) TuneFrom(r routes.Route, warm *routes.Settings) (routes.Run, err
 		g.round()
 		g.shorter(lowest)
 	}
-	return g.best.run, g.failed
+	if g.failed != nil {
+		return routes.Run{}, g.failed
+	}
+	return t.whole(g.best.run)
 }
 
 // worthIt drops a start where everything is tried out anyway.
@@ -210,7 +229,7 @@ func (t *Tuner) driest(head routes.Route) (run routes.Run, err error) {
 
 // try runs a spot and keeps it if it is the best so far.
 func (g *tuning) try(s spot) float64 {
-	run, err := g.t.Run(g.route, g.settingsAt(s))
+	run, err := g.t.outline(g.route, g.settingsAt(s))
 	if err == nil {
 		err = g.t.inTime(&run)
 	}

@@ -40,6 +40,12 @@ func series(m *thermo.Mixture, feed Lot, charges []Charge, sorbent Sorbent, rig 
 			return Outcome{}, fmt.Errorf("charge %d: %w", i+1, err)
 		}
 		total.follow(o, i+1)
+		if !rig.Outline {
+			total.tell(o, i+1)
+		}
+	}
+	if rig.Outline {
+		return total, nil
 	}
 	total.Why = AtTime
 	total.WhyText = fmt.Sprintf("%s after %d charges", quantity.FormatWater(total.Out.Water()), len(charges))
@@ -111,22 +117,29 @@ func SeriesFor(m *thermo.Mixture, feed Lot, goal, timeS float64, n int, sorbent 
 	over := func(doseKgPerM3 float64) (Outcome, error) {
 		return SoakSeries(m, feed, charges(doseKgPerM3), sorbent, rig)
 	}
-	dose := float64(n) * math.Max(sorbent.MinDoseKgPerM3, leastDose)
-	o, err := over(dose)
-	if err == nil && o.Out.Water() <= goal {
-		return reachedBySeries(o, n), nil
+	after := func(doseKgPerM3 float64) float64 {
+		return waterAfter(m, feed, charges(doseKgPerM3), sorbent, rig)
 	}
-	if o, err = over(math.Max(most, dose)); err != nil || o.Out.Water() > goal {
+	dose := float64(n) * math.Max(sorbent.MinDoseKgPerM3, leastDose)
+	if after(dose) <= goal {
+		o, err := over(dose)
+		return reachedBySeries(o, n), err
+	}
+	if largest := math.Max(most, dose); !(after(largest) <= goal) {
+		o, err := over(largest)
+		if err != nil || rig.Outline {
+			return o, err
+		}
 		unhurried := waterAfter(m, feed, EqualCharges(n, most*volumeM3, longestSoakS/float64(n)), sorbent, rig)
-		return missedBySeries(o, goal, n, unhurried > goal), err
+		return missedBySeries(o, goal, n, unhurried > goal), nil
 	}
 	lnDose, err := thermo.Brent(func(lnDose float64) float64 {
-		return math.Log(waterAfter(m, feed, charges(math.Exp(lnDose)), sorbent, rig) / goal)
+		return math.Log(after(math.Exp(lnDose)) / goal)
 	}, math.Log(dose), math.Log(most), 1e-10)
 	if err != nil {
 		return Outcome{}, err
 	}
-	o, err = over(math.Exp(lnDose))
+	o, err := over(math.Exp(lnDose))
 	return reachedBySeries(o, n), err
 }
 
@@ -207,6 +220,9 @@ func (b *bath) sizeOf(o Outcome, goal, timeS float64, n int, capacityGrams float
 }
 
 func reachedBySeries(o Outcome, n int) Outcome {
+	if len(o.Course) == 0 { // an outline
+		return o
+	}
 	o.Why = AtTarget
 	o.WhyText = fmt.Sprintf("%s with the last of %d charges", quantity.FormatWater(o.Out.Water()), n)
 	return o
@@ -229,6 +245,19 @@ func missedBySeries(o Outcome, goal float64, n int, full bool) Outcome {
 
 // follow adds the next charge to a series.
 func (o *Outcome) follow(next Outcome, charge int) {
+	for _, l := range next.Losses {
+		o.Losses = append(o.Losses, Loss{fmt.Sprintf("%s, charge %d", l.Cause, charge), l.SolventKg})
+	}
+	o.Out = next.Out
+	o.HoursTotal += next.HoursTotal
+	o.HoursAttended += next.HoursAttended
+	o.AgentKg += next.AgentKg
+	o.SolventLostL += next.SolventLostL
+	o.Balance.add(next.Balance)
+}
+
+// tell enters what is to be said of the next charge of a series.
+func (o *Outcome) tell(next Outcome, charge int) {
 	started := 0.0
 	if n := len(o.Course); n > 0 {
 		started = o.Course[n-1].Hours
@@ -237,9 +266,6 @@ func (o *Outcome) follow(next Outcome, charge int) {
 		p.Hours += started
 		o.Course = append(o.Course, p)
 	}
-	for _, l := range next.Losses {
-		o.Losses = append(o.Losses, Loss{fmt.Sprintf("%s, charge %d", l.Cause, charge), l.SolventKg})
-	}
 	o.Figures = append(o.Figures,
 		Figure{fmt.Sprintf("dose, charge %d", charge), "g/L", next.Figure("dose")},
 		Figure{fmt.Sprintf("water after charge %d", charge), "mg/kg", next.Out.Water() * mgPerKg},
@@ -247,13 +273,7 @@ func (o *Outcome) follow(next Outcome, charge int) {
 	for _, w := range next.Warnings {
 		o.Warnings = append(o.Warnings, fmt.Sprintf("charge %d: %s", charge, w))
 	}
-	o.Out, o.RuledBy = next.Out, next.RuledBy
-	o.Floor = next.Floor
-	o.HoursTotal += next.HoursTotal
-	o.HoursAttended += next.HoursAttended
-	o.AgentKg += next.AgentKg
-	o.SolventLostL += next.SolventLostL
-	o.Balance.add(next.Balance)
+	o.RuledBy, o.Floor = next.RuledBy, next.Floor
 }
 
 // add joins the balance of the step that follows: what came out of the first is

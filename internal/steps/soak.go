@@ -22,6 +22,10 @@ type SoakRig struct {
 	Stirred            bool
 	RelativeVelocityMS float64 // of the liquid past a bead that is stirred
 
+	// Outline leaves out what is told of a soak beside its dose, water and losses: its
+	// course, floor and figures, why it ends, what rules it and what it warns of.
+	Outline bool
+
 	// Lots of the same kind that go over a charge as it is before it is taken out,
 	// this one the last; 0: 1. Between them the beads stay wet and shut.
 	Lots int

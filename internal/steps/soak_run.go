@@ -35,17 +35,12 @@ func SoakOver(m *thermo.Mixture, feed Lot, doseKgPerM3, timeS float64, sorbent S
 const soakPoints = 25
 
 func (b *bath) run(goal, timeS float64, dose SoakDose) (Outcome, error) {
-	floor, err := b.floor()
-	if err != nil {
-		return Outcome{}, err
-	}
 	decanted, eq, err := b.decanted(dose.Dose, timeS)
 	if err != nil {
 		return Outcome{}, err
 	}
 	doseKg := dose.Dose * b.volumeM3
-	at := func(t float64) float64 { return b.course(eq, dose.Dose, t) }
-	out := at(timeS)
+	out := b.course(eq, dose.Dose, timeS)
 
 	vessels := float64(b.rig.Vessels)
 	heldKg := b.feed.SolventKg - decanted.SolventKg
@@ -53,16 +48,10 @@ func (b *bath) run(goal, timeS float64, dose SoakDose) (Outcome, error) {
 	o := Outcome{
 		Kind: Soak, Agent: b.sorbent.Key, In: b.feed,
 		Out:           decanted,
-		Floor:         floor,
 		HoursTotal:    timeS/secondsPerHour + vessels*b.rig.AttendedS/secondsPerHour,
 		HoursAttended: vessels * b.rig.AttendedS / secondsPerHour,
 		AgentKg:       doseKg,
 		Losses:        []Loss{{"held by the drained beads", heldKg}},
-	}
-	o.Course = make([]Point, soakPoints)
-	for i := range o.Course {
-		t := timeS * float64(i) / (soakPoints - 1)
-		o.Course[i] = Point{Hours: t / secondsPerHour, Water: at(t)}
 	}
 	o.account(b.m.Solvent, b.tempK)
 	takenKg := b.feed.WaterKg - b.feed.SolventKg*ratio
@@ -72,13 +61,29 @@ func (b *bath) run(goal, timeS float64, dose SoakDose) (Outcome, error) {
 		takenKg += o.Balance.WaterMadeKg
 	}
 	o.Balance.WaterRemovedKg = takenKg + heldKg*ratio
-	o.Why, o.WhyText = b.reason(goal, out, floor, timeS, dose)
+	if !b.rig.Outline {
+		err = b.tell(&o, goal, eq, timeS, takenKg, dose)
+	}
+	return o, err
+}
+
+// tell enters what is to be said of a soak that came to eq, kg/kg, in the end.
+func (b *bath) tell(o *Outcome, goal, eq, timeS, takenKg float64, dose SoakDose) (err error) {
+	if o.Floor, err = b.floor(); err != nil {
+		return err
+	}
+	o.Course = make([]Point, soakPoints)
+	for i := range o.Course {
+		t := timeS * float64(i) / (soakPoints - 1)
+		o.Course[i] = Point{Hours: t / secondsPerHour, Water: b.course(eq, dose.Dose, t)}
+	}
+	o.Why, o.WhyText = b.reason(goal, o.Course[soakPoints-1].Water, o.Floor, timeS, dose)
 	if b.rig.Lots > 1 {
 		o.WhyText += fmt.Sprintf(", with the last of %d lots over one charge", b.rig.Lots)
 		o.Warnings = append(o.Warnings, fmt.Sprintf("%d lots go over one charge as it is: the outlet is that of the last, the beads stay wet and shut between them and serve this solvent only; regenerate or replace them before lot %d", b.rig.Lots, b.rig.Lots+1))
 	}
-	o.Figures = b.figures(dose, eq, takenKg, doseKg)
-	return o, b.remark(&o, eq, timeS, dose.Dose, takenKg)
+	o.Figures = b.figures(dose, eq, takenKg, o.AgentKg)
+	return b.remark(o, eq, timeS, dose.Dose, takenKg)
 }
 
 // decanted is what comes off the beads after timeS, and the water of the equilibrium
