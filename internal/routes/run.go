@@ -22,12 +22,12 @@ func (c *Case) Run(r Route, s Settings) (Run, error) {
 	return c.RunTo(r, s, c.aim(s))
 }
 
-// RunOutline is Run with soaks in outline (steps.SoakRig), for many runs of which few are
-// told of.
-func (c *Case) RunOutline(r Route, s Settings) (Run, error) {
-	outline := *c
-	outline.outline = true
-	return outline.Run(r, s)
+// Outline is the case with soaks in outline (steps.SoakRig), for many runs of which few
+// are told of.
+func (c *Case) Outline() *Case {
+	k := *c
+	k.outline = true
+	return &k
 }
 
 // RunTo is Run with a goal (kg/kg) for the last step of its own.

@@ -279,12 +279,17 @@ const leastKept, roundly, laterShare, tubeShare = 0.9, 0.97, 0.8, 0.8
 // sorbent, and the least water to take up the least of it; the shortest takes the
 // least time. Two charges leave the least water.
 func (b *Bounds) bed(k *routes.Case, s routes.Stage) (tolls []toll, out steps.Lot, ends bool, err error) {
+	ways := b.tuner.afterUse()
+	if k.Feed.Water() <= k.Goal() { // nothing is left for it, however it is used
+		_, err = b.bedded(k, s, ways[len(ways)-1], b.stands(s.Kind)[0], 1, 1, k.Goal())
+		return nil, out, false, err
+	}
 	driest, last := math.Inf(1), errors.New("")
 	lots := []int{1}
 	if s.Kind == steps.Soak {
 		lots = b.tuner.lotsOverCharge()
 	}
-	for _, after := range b.tuner.afterUse() {
+	for _, after := range ways {
 		least, found := toll{}, false
 		count := func(run *routes.Run) {
 			x := b.toll(run)
@@ -349,7 +354,7 @@ func (b *Bounds) bedded(k *routes.Case, s routes.Stage, after string, v stand, c
 		setCharges(&set, 0, charges)
 		setLotsOverCharge(&set, 0, lots)
 	}
-	return k.RunTo(alone, set, goal)
+	return k.Outline().RunTo(alone, set, goal)
 }
 
 // stands that need the least sorbent.

@@ -43,12 +43,12 @@ type Tuner struct {
 
 // Run carries out a route as a plan and arranges its uses as the site pays for them.
 func (t *Tuner) Run(r routes.Route, s routes.Settings) (routes.Run, error) {
-	return t.carryOut(t.Case.Run, r, s)
+	return t.carryOut(t.Case, r, s)
 }
 
 // outline is Run with soaks in outline.
 func (t *Tuner) outline(r routes.Route, s routes.Settings) (routes.Run, error) {
-	return t.carryOut(t.Case.RunOutline, r, s)
+	return t.carryOut(t.Case.Outline(), r, s)
 }
 
 // whole is a run in outline as Run gives it.
@@ -58,20 +58,20 @@ func (t *Tuner) whole(outline routes.Run) (routes.Run, error) {
 	return run, err
 }
 
-func (t *Tuner) carryOut(run func(routes.Route, routes.Settings) (routes.Run, error), r routes.Route, s routes.Settings) (routes.Run, error) {
+func (t *Tuner) carryOut(k *routes.Case, r routes.Route, s routes.Settings) (routes.Run, error) {
 	if t.Stop != nil {
 		if err := t.Stop(); err != nil {
 			return routes.Run{}, err
 		}
 	}
-	done, err := run(r, s)
+	run, err := k.Run(r, s)
 	if err == nil {
-		err = routes.Idle(&done)
+		err = routes.Idle(&run)
 	}
 	if err == nil && t.Site != nil {
-		t.Site.Apply(&done, t.Case.Lot.BatchesPerYear)
+		t.Site.Apply(&run, t.Case.Lot.BatchesPerYear)
 	}
-	return done, err
+	return run, err
 }
 
 // Value of the objective, or of the mix of objectives, for a run.
