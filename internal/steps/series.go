@@ -90,7 +90,8 @@ func waterAfter(m *thermo.Mixture, feed Lot, charges []Charge, sorbent Sorbent, 
 		if err != nil {
 			return math.NaN()
 		}
-		if left, _, err = b.decanted(c.Kg/b.volumeM3, c.TimeS); err != nil || !(left.SolventKg > 0) {
+		eq, err := b.over(c.Kg / b.volumeM3)
+		if left = b.decanted(eq, c.Kg/b.volumeM3, c.TimeS); err != nil || !(left.SolventKg > 0) {
 			return math.NaN()
 		}
 	}

@@ -15,6 +15,8 @@ type SoakDose struct {
 	Dose     float64 // what both together need, at most the largest practical dose
 	Enough   bool
 	AtLeast  bool // Dose is the least usual one; less would do
+
+	eq float64 // kg/kg, in equilibrium with Dose, where it was found with it; 0: it was not
 }
 
 // Ruling names the larger of the two sizes of a dose, or the least dose where
@@ -108,10 +110,6 @@ func (b *bath) dose(goal, timeS float64) (SoakDose, error) {
 	if b.rig.CondensationPerS > 0 {
 		return b.doseWithCondensation(d, goal, timeS)
 	}
-	reached, err := b.water(d.Dose, timeS)
-	if err != nil || reached > goal {
-		return d, err
-	}
 	return b.exact(d, goal, timeS)
 }
 
@@ -122,25 +120,34 @@ const leastDose = 1e-6 // kg/m3, the lower end of the search
 //
 //	w_eq = (w - w_0 e)/(1 - e), e = exp(-K(m) t)
 //
-// A goal next to what came in is reached by less than the least dose; one that only
-// the largest dose reaches may miss the balance by rounding.
+// A goal next to what came in is reached by less than the least dose; what the largest
+// has nothing to spare for is not reached.
 func (b *bath) exact(d SoakDose, goal, timeS float64) (SoakDose, error) {
 	spare, least, most := b.spare(goal, timeS), math.Log(leastDose), math.Log(d.Dose)
-	lnDose := most
 	switch {
+	case spare(most) < 0:
+		return d, nil
 	case spare(least) >= 0:
-		lnDose = least
-	case spare(most) > 0:
-		var err error
-		if lnDose, err = thermo.Brent(spare, least, most, 1e-12); err != nil {
+		d.Dose = leastDose
+	default:
+		lnDose, err := thermo.Brent(spare, least, most, 1e-12)
+		if err != nil {
 			return d, err
 		}
+		d.Dose = math.Exp(lnDose)
+		d.eq = b.needed(goal, timeS, d.Dose)
 	}
-	d.Dose, d.Enough = math.Exp(lnDose), true
+	d.Enough = true
 	if least := b.sorbent.MinDoseKgPerM3; d.Dose < least {
-		d.Dose, d.AtLeast = least, true
+		d.Dose, d.AtLeast, d.eq = least, true, 0
 	}
 	return d, nil
+}
+
+// needed is the equilibrium (kg/kg) on the way to which a dose comes to goal in timeS.
+func (b *bath) needed(goal, timeS, doseKgPerM3 float64) float64 {
+	e := math.Exp(-b.rate(doseKgPerM3) * timeS)
+	return (goal - b.feed.Water()*e) / (1 - e)
 }
 
 // spare is the water (kg) that a dose of a logarithm could take beyond what it takes
@@ -149,8 +156,7 @@ func (b *bath) spare(goal, timeS float64) func(lnDose float64) float64 {
 	feed := b.feed.Water()
 	return func(lnDose float64) float64 {
 		dose := math.Exp(lnDose)
-		e := math.Exp(-b.rate(dose) * timeS)
-		eq := (goal - feed*e) / (1 - e)
+		eq := b.needed(goal, timeS, dose)
 		if eq <= 0 {
 			return -feed*b.feed.SolventKg - b.beforeKg()
 		}

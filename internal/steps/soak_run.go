@@ -35,10 +35,13 @@ func SoakOver(m *thermo.Mixture, feed Lot, doseKgPerM3, timeS float64, sorbent S
 const soakPoints = 25
 
 func (b *bath) run(goal, timeS float64, dose SoakDose) (Outcome, error) {
-	decanted, eq, err := b.decanted(dose.Dose, timeS)
-	if err != nil {
-		return Outcome{}, err
+	eq, err := dose.eq, error(nil)
+	if eq == 0 {
+		if eq, err = b.over(dose.Dose); err != nil {
+			return Outcome{}, err
+		}
 	}
+	decanted := b.decanted(eq, dose.Dose, timeS)
 	doseKg := dose.Dose * b.volumeM3
 	out := b.course(eq, dose.Dose, timeS)
 
@@ -86,20 +89,21 @@ func (b *bath) tell(o *Outcome, goal, eq, timeS, takenKg float64, dose SoakDose)
 	return b.remark(o, eq, timeS, dose.Dose, takenKg)
 }
 
-// decanted is what comes off the beads after timeS, and the water of the equilibrium
-// it was on its way to, kg/kg.
-func (b *bath) decanted(doseKgPerM3, timeS float64) (out Lot, eq float64, err error) {
-	doseKg := doseKgPerM3 * b.volumeM3
-	eq = b.feed.Water()
-	if doseKg > 0 {
-		if eq, err = b.equilibrium(doseKg); err != nil {
-			return Lot{}, eq, err
-		}
+// over is the water in equilibrium with a dose, kg/kg; that of the lot where it is none.
+func (b *bath) over(doseKgPerM3 float64) (float64, error) {
+	if doseKgPerM3 == 0 {
+		return b.feed.Water(), nil
 	}
+	return b.equilibrium(doseKgPerM3 * b.volumeM3)
+}
+
+// decanted is what comes off the beads after timeS on the way to eq, kg/kg.
+func (b *bath) decanted(eq, doseKgPerM3, timeS float64) Lot {
+	doseKg := doseKgPerM3 * b.volumeM3
 	w := b.course(eq, doseKgPerM3, timeS)
 	heldKg := math.Min(doseKg*b.sorbent.HoldUpM3PerKg*b.m.Solvent.DensityKgPerM3.At(b.tempK), b.feed.SolventKg) / b.lots()
 	keptKg := b.feed.SolventKg - heldKg
-	return Lot{SolventKg: keptKg, WaterKg: keptKg * w / (1 - w), TempK: b.tempK}, eq, nil
+	return Lot{SolventKg: keptKg, WaterKg: keptKg * w / (1 - w), TempK: b.tempK}
 }
 
 func (b *bath) figures(dose SoakDose, eq, takenKg, doseKg float64) []Figure {
