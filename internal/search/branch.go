@@ -3,9 +3,11 @@ package search
 import (
 	"cmp"
 	"errors"
+	"fmt"
 	"math"
 	"slices"
 
+	"parch/internal/quantity"
 	"parch/internal/routes"
 	"parch/internal/steps"
 )
@@ -256,16 +258,11 @@ func (b *Bounds) boiled(k *routes.Case, s routes.Stage) (tolls []toll, out steps
 	if err != nil {
 		return nil, out, false, err
 	}
-	out, ends = b.handedOver(far.Outcomes[0].Out, far.WaterOut) // what it loses at most makes what follows small
+	out, ends = far.Outcomes[0].Out, far.WaterOut <= b.goal()    // what it loses at most makes what follows small
+	if w := worthASieve * b.tuner.Case.Goal(); out.Water() < w { // it hands over no drier before another step
+		out.WaterKg = out.SolventKg * w / (1 - w)
+	}
 	return []toll{b.toll(&short).times(boilShare)}, out, ends, nil
-}
-
-// handedOver is a lot at best before another step: no drier than makes sense there.
-func (b *Bounds) handedOver(kept steps.Lot, water float64) (out steps.Lot, ends bool) {
-	w := math.Min(kept.Water(), math.Max(worthASieve*b.tuner.Case.Goal(), water))
-	out = kept
-	out.WaterKg = out.SolventKg * w / (1 - w)
-	return out, water <= b.goal()
 }
 
 // leastKept is left of a lot on beads of which more are taken than the least,
@@ -280,9 +277,8 @@ const leastKept, roundly, laterShare, tubeShare = 0.9, 0.97, 0.8, 0.8
 // least time. Two charges leave the least water.
 func (b *Bounds) bed(k *routes.Case, s routes.Stage) (tolls []toll, out steps.Lot, ends bool, err error) {
 	ways := b.tuner.afterUse()
-	if k.Feed.Water() <= k.Goal() { // nothing is left for it, however it is used
-		_, err = b.bedded(k, s, ways[len(ways)-1], b.stands(s.Kind)[0], 1, 1, k.Goal())
-		return nil, out, false, err
+	if k.Feed.Water() <= b.goal() { // nothing is left for it, however it is used
+		return nil, out, false, fmt.Errorf("what stands before it leaves %s at best, where %s is asked for: nothing is left for beads", quantity.FormatWater(k.Feed.Water()), quantity.FormatWater(k.Goal()))
 	}
 	driest, last := math.Inf(1), errors.New("")
 	lots := []int{1}
@@ -311,8 +307,8 @@ func (b *Bounds) bed(k *routes.Case, s routes.Stage) (tolls []toll, out steps.Lo
 			}
 			count(&run)
 			if o := run.Outcomes[0]; o.Out.Water() < driest {
-				driest = o.Out.Water()
-				out, ends = b.handedOver(o.Out, driest)
+				driest, out = o.Out.Water(), o.Out
+				ends = driest <= b.goal()
 				out.SolventKg, out.WaterKg = out.SolventKg*leastKept, out.WaterKg*leastKept
 			}
 		}
