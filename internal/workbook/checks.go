@@ -90,12 +90,15 @@ func (l *layout) testRows(g *grid, first int, tests []test, flagFormula, wordFor
 		}
 		t.found.formula = strings.ReplaceAll(t.found.formula, ownTolerance, fmt.Sprintf("F%d", row))
 		g.putRow(row, count(i+1), text(words, t.what), t.found.in(t.unit), t.expected.in(t.unit),
-			derived(fmt.Sprintf("(ABS(C%[1]d-D%[1]d)>F%[1]d)*(C%[1]d-D%[1]d)", row), difference).in(t.unit).shown("0.0E+00"),
-			number(t.tolerance, t.unit).shown("0.0E+00"), text(plain, t.unit),
+			derived(fmt.Sprintf("(ABS(C%[1]d-D%[1]d)>F%[1]d)*(C%[1]d-D%[1]d)", row), difference).in(t.unit).shown(smallOrNone),
+			number(t.tolerance, t.unit).shown(smallOrNone), text(plain, t.unit),
 			whole(fmt.Sprintf(flagFormula, row), 0), derived(fmt.Sprintf(wordFormula, row), "holds"))
 	}
 	return rows{first, first + len(tests) - 1}
 }
+
+// smallOrNone shows a small number by its power of ten, and none as 0.
+const smallOrNone = "0.0E+00;-0.0E+00;0"
 
 // none is the expected value of a check that counts faults.
 func none() cell { return count(0) }

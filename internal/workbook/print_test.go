@@ -146,10 +146,13 @@ func checkExponents(t *testing.T, pdf string, page int) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	for _, want := range []string{"0.0E+00 ", "5.0E-03 "} {
+	for _, want := range []string{"1.2E-06 ", "5.0E-03 "} {
 		if !strings.Contains(string(out), want) {
 			t.Errorf("Checks prints no %s", want)
 		}
+	}
+	if strings.Contains(string(out), "0.0E+00") {
+		t.Error("Checks prints 0 as a power of ten")
 	}
 }
 
