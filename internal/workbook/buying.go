@@ -21,7 +21,7 @@ const (
 
 func (l *layout) buying() *grid {
 	g := newGrid(sheetBuying, "What to order for a year of the recommended routes, all lots together. Values of the program: after an edit of an input or a price the list is that of the run, no longer that of the sheet.",
-		tabResult, checkCell(), 16, 29, 9, 8.5, 8.5, 8.5, 8.5, 7, 7, 8, 11, 11, 10, 16, 12, 12)
+		tabResult, checkCell(), 16, 29, 9, 8.5, 8.5, 8.5, 8.5, 7, 7, 8, 11, 11, 10, 16, 13, 13)
 	g.mixed, g.frozenRows, g.frozenColumns = true, frameRows, 1
 	l.banner(g, frameRows+1)
 	list := l.report.Buying.Purchases
@@ -38,7 +38,7 @@ func (l *layout) buying() *grid {
 	}
 	first := g.table(g.next(), name,
 		[]column{{name: "Item"}, {name: "Specification"}, {"Process", "1"}, {"Losses", "1"}, {"Safety stock", "1"}, {"On hand", "1"}, {"To buy", "1"}, {name: "Unit"},
-			{"Pack", "1"}, {"Packs", "1"}, order, there, {"Cost", l.currency()}, {name: "Price"}, {name: "Ordered by, date"}, {name: "Received by, date"}})
+			{"Pack", "1"}, {"Packs", "1"}, order, there, {"Cost", l.currency()}, {name: "Price is"}, {name: "Ordered by, date"}, {name: "Received by, date"}})
 	row := first
 	total := 0.0
 	for i := range list {
