@@ -32,10 +32,9 @@ func (l *layout) cardWords(r *routeModel, points int) cardWords {
 	soaks, beds := 0, 0
 	for i := range r.Run.Outcomes {
 		o := &r.Run.Outcomes[i]
-		name := capital(string(o.Kind))
-		short := name
+		name, short := capital(string(o.Kind)), stepOnCard(r, i)
 		if several {
-			name, short = fmt.Sprintf("Step %d, %s", i+1, o.Kind), fmt.Sprintf("%d %s", i+1, o.Kind)
+			name = fmt.Sprintf("Step %d, %s", i+1, o.Kind)
 		}
 		sieve := ""
 		if o.Kind == steps.Soak || o.Kind == steps.Column {
@@ -210,6 +209,15 @@ func unitOf(o *steps.Outcome, name string) string {
 		}
 	}
 	return ""
+}
+
+// stepOnCard is how what is to be expected names a step, in the list and in its chart.
+func stepOnCard(r *routeModel, i int) string {
+	kind := string(r.Run.Outcomes[i].Kind)
+	if len(r.Run.Outcomes) == 1 {
+		return capital(kind)
+	}
+	return fmt.Sprintf("%d %s", i+1, kind)
 }
 
 // expectPoints is how many of the points each step with a course may take.

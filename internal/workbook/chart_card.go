@@ -24,7 +24,7 @@ func courseOf(r *routeModel) drawnCourse {
 		x := &r.Run.Outcomes[i]
 		boils := x.Kind == steps.Trap || x.Kind == steps.Forerun
 		if len(x.Course) > 1 && (o == nil || boils && o.Kind != steps.Trap && o.Kind != steps.Forerun) {
-			o, place = x, i+1
+			o, place = x, i
 		}
 	}
 	if o == nil {
@@ -34,7 +34,7 @@ func courseOf(r *routeModel) drawnCourse {
 		}
 		return d
 	}
-	d := drawnCourse{name: fmt.Sprintf("Step %d, %s", place, o.Kind)}
+	d := drawnCourse{name: stepOnCard(r, place)}
 	for i := range d.water {
 		hours, water := between(o.Course, float64(i)/(cardPoints-1))
 		d.hours[i], d.water[i] = tidy(hours), tidy(max(water*mgPerKg, lowestPlotted))
@@ -52,6 +52,10 @@ func between(course []steps.Point, share float64) (hours, water float64) {
 	low := lowestPlotted / mgPerKg
 	return a.Hours + part*(b.Hours-a.Hours), max(a.Water, low) * math.Pow(max(b.Water, low)/max(a.Water, low), part)
 }
+
+// cardTitle stands behind the name of the step. It says what a legend would, which would
+// take half of the height of the chart.
+const cardTitle = ": mg/kg against h, logarithmic; dashed: accept at"
 
 const (
 	cardChartWidth = 238 // pixels, within the column of text
@@ -85,14 +89,19 @@ func (l *layout) cardChart(c *cardModel, data, row, points, pixels int) {
 		g.put(cardChosen+i, data, text(heading, x.heading()))
 	}
 	c.choose(cardChosen, data+1, helperName, plain, "", "", names)
+	title := fixed(cardChosen, data+3) // apart from the name above: a column of a block has one formula
+	g.put(cardChosen, data+3, derived(fmt.Sprintf("%s&%q", fixed(cardChosen, data+1), cardTitle), courses[c.chosen].name+cardTitle))
 	c.heads(data, helperTime, column{"time", "h"})
 	c.heads(data, helperWater, column{"water", "mg/kg"})
 	for i := range cardPoints {
 		c.chartRow(data+1+i, i, courses)
 	}
-	ch := baseChart(excelize.Scatter, "mg/kg against h, logarithmic")
-	ch.Title.Paragraph[0].Font.Size = 9
 	sheet := sheetBenchCard
+	ch := baseChart(excelize.Scatter, "")
+	font := *ch.Title.Paragraph[0].Font
+	font.Size = 9
+	ch.Title = excelize.ChartTitle{Formula: on(sheet, title), Font: &font}
+	ch.Legend.Position = "none"
 	ch.Format.AltText = fmt.Sprintf("Line on a logarithmic axis: water against time in a step of the route chosen on the card of lot %d, with the acceptance limit. The numbers stand right of the card, rows %d to %d.", c.lot.no, data+1, data+cardPoints)
 	ch.XAxis.MajorGridLines = true
 	ch.XAxis.NumFmt = excelize.ChartNumFmt{CustomNumFmt: "General"}

@@ -200,14 +200,19 @@ func (w *file) lookUpDrawn() error {
 	w.drawn = map[string][]cell{}
 	for _, g := range w.grids {
 		for _, p := range g.charts {
+			var references []string
+			if title := p.chart.Title.Formula; title != "" {
+				references = append(references, title)
+			}
 			for _, s := range p.chart.Series {
-				for _, reference := range []string{s.Name, s.Categories, s.Values} {
-					cells, err := w.valuesAt(reference)
-					if err != nil {
-						return fmt.Errorf("chart on %s: %w", g.name, err)
-					}
-					w.drawn[reference] = cells
+				references = append(references, s.Name, s.Categories, s.Values)
+			}
+			for _, reference := range references {
+				cells, err := w.valuesAt(reference)
+				if err != nil {
+					return fmt.Errorf("chart on %s: %w", g.name, err)
 				}
+				w.drawn[reference] = cells
 			}
 		}
 	}
