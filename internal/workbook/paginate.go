@@ -19,7 +19,7 @@ const entryRow = 2
 // each of a sheet that flows, runs on, and is broken where the least that a page holds is
 // full: readers differ in what it holds, and would differ in what follows. The last
 // block is left to the reader, but for its headings, which stay with its first entry;
-// lists repeat their headings on each page, so that they are broken to their end.
+// lists repeat their headings on each page, so that they are broken as far as it takes.
 func (g *grid) paginate() {
 	if len(g.parts) == 0 || len(g.breaks) > 0 {
 		return
@@ -69,6 +69,9 @@ func (g *grid) runOn(first, last int, used, page, titles float64) float64 {
 			together = min(row+entryRow, last)
 		}
 		if used+g.span(row, together) > page && used > titles {
+			if g.endsHere(row, last, used, page) {
+				return used
+			}
 			if g.isList(row) && !g.isBlock(row) && !g.blankRow(row) {
 				last += g.headAgain(row)
 			}
@@ -78,6 +81,16 @@ func (g *grid) runOn(first, last int, used, page, titles float64) float64 {
 		used += g.span(row, row)
 	}
 	return used
+}
+
+// fullPage is the share of a page that the end of a sheet may take.
+const fullPage = 0.98
+
+// endsHere reports whether the rest of the last list fits on the page of most readers: it is
+// left to the others to break, rather than to have a page of a few lines everywhere.
+func (g *grid) endsHere(row, last int, used, page float64) bool {
+	return g.isList(row) && last == g.last() && row > g.lastBlock(g.listsFrom, last)+entryRow &&
+		used+g.span(row, last) <= page*fullPage/pageFilled
 }
 
 // isList reports whether a row belongs to the lists of a sheet: text that no formula reads.
