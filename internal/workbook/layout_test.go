@@ -226,3 +226,18 @@ func TestListsAreText(t *testing.T) {
 		}
 	}
 }
+
+// The prices of a job with one lot and the usual steps are one page.
+func TestPricesOfOneLotAreOnePage(t *testing.T) {
+	for _, job := range []string{"acetonitrile", "reclaimed-ethyl-acetate", "saturated-toluene"} {
+		m, err := newModel(jobReport(t, job))
+		if err != nil {
+			t.Fatal(err)
+		}
+		for _, g := range lay(m).grids {
+			if share := g.span(1, g.last()) * g.scale() / printableHeight; g.name == sheetPrices && share > 0.98 {
+				t.Errorf("%s: Prices takes %.2f pages", job, share)
+			}
+		}
+	}
+}

@@ -14,7 +14,7 @@ const mostMoney = 1e7
 
 func (l *layout) priceList() *grid {
 	g := newGrid(sheetPrices, "What things cost. Edit a blue cell and every cost, total and rank follows. Prices are dated; check them before a decision.",
-		tabInput, checkCell(), 20, 27, 13.2, 10, 33, 13.2, 14, 15, 9, 11, 12, 17)
+		tabInput, checkCell(), 20, 27, 13.2, 10, 46, 13.2, 14, 15, 9, 11, 12, 17)
 	first := g.table(frameRows+2, "Prices, "+l.currency(), priceColumns)
 	g.frozenRows = first - 1
 	format := l.priceFormat()
