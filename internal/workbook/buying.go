@@ -36,7 +36,9 @@ func (l *layout) buying() *grid {
 		order, there = column{name: "Order on"}, column{name: "There by"}
 		name = fmt.Sprintf("Order list; the first order is placed on %s, the first batch is on %s", buying.FirstOrder, date)
 	}
-	first := g.table(g.next(), name,
+	g.listsFrom = g.next()
+	g.part(g.listsFrom)
+	first := g.table(g.listsFrom, name,
 		[]column{{name: "Item"}, {name: "Specification"}, {"Process", "1"}, {"Losses", "1"}, {"Safety stock", "1"}, {"On hand", "1"}, {"To buy", "1"}, {name: "Unit"},
 			{"Pack", "1"}, {"Packs", "1"}, order, there, {"Cost", l.currency()}, {name: "Price is"}, {name: "Ordered by, date"}, {name: "Received by, date"}})
 	row := first
@@ -44,25 +46,33 @@ func (l *layout) buying() *grid {
 	for i := range list {
 		row = l.purchaseRows(g, row, &list[i], &total)
 	}
-	l.ordersTotal(g, rows{first, row - 1}, total)
+	g.put(2, row, text(block, l.ordersTotalName()))
 	l.orderNotes(g, list)
+	g.paginate() // the list grows by the headings that are repeated
+	for row = first; row < g.last() && !isTotal(g.rows[row-1]); row++ {
+	}
+	l.ordersTotal(g, rows{first, row - 1}, total)
 	return g
+}
+
+// isTotal reports whether a row has the name of the total.
+func isTotal(row []cell) bool { return len(row) > 1 && row[1].look == block }
+
+func (l *layout) ordersTotalName() string {
+	for _, p := range l.report.Buying.Purchases {
+		if !p.Priced && p.ToBuy > 0 {
+			return "All orders that have a price"
+		}
+	}
+	return "All orders"
 }
 
 // ordersTotal adds up what the orders cost, as far as they have a price.
 func (l *layout) ordersTotal(g *grid, ordered rows, total float64) {
-	row, orders, open := ordered.last+1, 0, 0
+	row, orders := ordered.last+1, 0
 	for _, p := range l.report.Buying.Purchases {
 		orders += len(p.Orders)
-		if !p.Priced && p.ToBuy > 0 {
-			open++
-		}
 	}
-	name := "All orders"
-	if open > 0 {
-		name = "All orders that have a price"
-	}
-	g.put(2, row, text(block, name))
 	if orders == 0 {
 		g.put(buyCost, row, text(program, "none"))
 		return

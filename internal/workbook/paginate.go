@@ -72,7 +72,7 @@ func (g *grid) runOn(first, last int, used, page, titles float64) float64 {
 			if g.endsHere(row, last, used, page) {
 				return used
 			}
-			if g.isList(row) && !g.isBlock(row) && !g.blankRow(row) {
+			if g.isList(row) && !g.isBlock(row) && !g.blankRow(row) && g.hasHeadings(g.lastBlock(g.listsFrom, row)) {
 				last += g.headAgain(row)
 			}
 			g.breaks = append(g.breaks, row)
@@ -93,7 +93,13 @@ func (g *grid) endsHere(row, last int, used, page float64) bool {
 		used+g.span(row, last) <= page*fullPage/pageFilled
 }
 
-// isList reports whether a row belongs to the lists of a sheet: text that no formula reads.
+// hasHeadings reports whether headings stand below the name of a block.
+func (g *grid) hasHeadings(name int) bool {
+	return name < len(g.rows) && len(g.rows[name]) > 0 && g.rows[name][0].look == heading
+}
+
+// isList reports whether a row belongs to the lists of a sheet: what no formula reads but the
+// total of the orders, which is written when they have their places.
 func (g *grid) isList(row int) bool { return g.listsFrom > 0 && row >= g.listsFrom }
 
 // headAgain puts the name of the list that a row belongs to and its headings above that row,
@@ -118,7 +124,7 @@ func (g *grid) headAgain(row int) (added int) {
 const continued = " (continued)"
 
 // insert makes room for some rows of a list. What lists hold moves; a formula, a mark or an
-// input stands in none.
+// input stands in none yet.
 func (g *grid) insert(row, count int) {
 	g.rows = slices.Insert(g.rows, row-1, make([][]cell, count)...)
 	for i := range g.merged {
