@@ -21,7 +21,7 @@ const (
 
 func (l *layout) buying() *grid {
 	g := newGrid(sheetBuying, "What to order for a year of the recommended routes, all lots together. Values of the program: after an edit of an input or a price the list is that of the run, no longer that of the sheet.",
-		tabResult, checkCell(), 16, 29, 9, 8.5, 8.5, 8.5, 8.5, 7, 7, 8, 11, 11, 10, 16, 13, 13)
+		tabResult, checkCell(), l.itemWidth(), 29, 9, 8.5, 8.5, 8.5, 8.5, 7, 7, 8, 11, 11, 10, 16, 13, 13)
 	g.mixed, g.frozenRows, g.frozenColumns = true, frameRows, 1
 	l.banner(g, frameRows+1)
 	list := l.report.Buying.Purchases
@@ -53,6 +53,22 @@ func (l *layout) buying() *grid {
 	}
 	l.ordersTotal(g, rows{first, row - 1}, total)
 	return g
+}
+
+// Widths of the column of items, in digits: long keys take more lines at their hyphens.
+const (
+	leastItem = 16.0
+	mostItem  = 24.0
+)
+
+// itemWidth has room for the longest key of an item on one line, within limits: readers
+// break a key at a hyphen or do not, and one that they cut in two is no longer a key.
+func (l *layout) itemWidth() float64 {
+	width := leastItem
+	for _, p := range l.report.Buying.Purchases {
+		width = max(width, unitsFor(p.Item))
+	}
+	return min(width, mostItem)
 }
 
 // isTotal reports whether a row has the name of the total.

@@ -279,3 +279,24 @@ func TestOrdersOfSeveralPages(t *testing.T) {
 		t.Errorf("all orders: %g, want %g", total, want)
 	}
 }
+
+// The longest key of a solvent in the catalog stands on one line of Buying.
+func TestItemsToBuyAreOnOneLine(t *testing.T) {
+	copied := *demo(t)
+	copied.Buying.Purchases = slices.Clone(copied.Buying.Purchases)
+	copied.Buying.Purchases[0].Item = "2-methyltetrahydrofuran"
+	m, err := newModel(&copied)
+	if err != nil {
+		t.Fatal(err)
+	}
+	for _, g := range lay(m).grids {
+		if g.name != sheetBuying {
+			continue
+		}
+		for r, row := range g.rows {
+			if len(row) > 0 && row[0].value == "2-methyltetrahydrofuran" && wrapped("2-methyltetrahydrofuran", g.roomFor(1, r+1), 10, false) > 1 {
+				t.Errorf("row %d: the key takes two lines", r+1)
+			}
+		}
+	}
+}
