@@ -10,6 +10,8 @@ import (
 	"testing"
 
 	"github.com/xuri/excelize/v2"
+
+	"parch/internal/study"
 )
 
 // The rules of this file are the project's own conventions for its workbook; they
@@ -446,4 +448,29 @@ func luminance(t *testing.T, rgb string) float64 {
 		sum += weight * c
 	}
 	return sum
+}
+
+// A solvent that makes water over beads balances too: with the water that it makes.
+func TestWaterThatIsMadeBalances(t *testing.T) {
+	r, err := runJob("made.yaml", []byte(`
+title: Water that is made
+exclude: {steps: [buy, trap, forerun, column, salt, reactive]}
+lots:
+  - {name: acetone, solvent: acetone, batch: 20 L, batches: 30 /yr, water: 0.5 %, target: 500 mg/kg}
+`), nil, study.Options{Draws: 100, Seed: 1})
+	if err != nil {
+		t.Fatal(err)
+	}
+	made := 0.0
+	for _, route := range r.Lots[0].Routes {
+		for _, o := range route.Run.Outcomes {
+			made += o.Balance.WaterMadeKg
+		}
+	}
+	if made < 1e-5 {
+		t.Fatalf("%g kg of water are made", made)
+	}
+	if _, _, c := readBook(t, written(t, r)).named(t, "check_total"); c.raw != "0" {
+		t.Errorf("check_total is %q", c.raw)
+	}
 }

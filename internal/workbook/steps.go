@@ -154,10 +154,11 @@ func why(o steps.Outcome) string {
 // balanceDigits show a gram in a thousand tonnes.
 const balanceDigits = 9
 
-// balanceBlock shows that nothing is lost on the way: in = out + removed.
+// balanceBlock shows that nothing is lost on the way: in = out + removed. Acetone makes
+// water over beads, which counts with what went in.
 func (l *layout) balanceBlock(g *grid, all []stepModel) {
 	first := g.table(g.next(), "Balances of the steps", []column{{name: "Lot"}, {name: "Route id"}, {"Route no", "1"}, {"Step", "1"},
-		{"Water in", "kg"}, {"Water out", "kg"}, {"Water removed", "kg"}, {"Water open", "kg"},
+		{"Water in and made", "kg"}, {"Water out", "kg"}, {"Water removed", "kg"}, {"Water open", "kg"},
 		{"Solvent in", "kg"}, {"Solvent out", "kg"}, {"Solvent removed", "kg"}, {"Solvent open", "kg"}})
 	for i, s := range all {
 		row, b := first+i, s.Balance
@@ -170,7 +171,7 @@ func (l *layout) balanceBlock(g *grid, all []stepModel) {
 			g.put(column+3, row, derived(fmt.Sprintf("%s-%s-%s", at(column, row), at(column+1, row), at(column+2, row)),
 				in-out-removed).in("kg").shown("0.0E+00"))
 		}
-		open(5, b.WaterInKg, b.WaterOutKg, b.WaterRemovedKg)
+		open(5, b.WaterInKg+b.WaterMadeKg, b.WaterOutKg, b.WaterRemovedKg)
 		open(9, b.SolventInKg, b.SolventOutKg, b.SolventRemovedKg)
 	}
 	l.stepRows = rows{first, first + len(all) - 1}
