@@ -3,6 +3,7 @@ package workbook
 import (
 	"fmt"
 	"slices"
+	"strconv"
 	"strings"
 
 	"parch/internal/costs"
@@ -105,7 +106,7 @@ func (l *layout) purchaseRows(g *grid, row int, p *costs.Purchase, total *float6
 		if i == 0 {
 			g.putRow(row, text(words, p.Item), text(words, orWords(p.Specification, p.Label)))
 			for k, v := range amounts {
-				g.put(buyNeed+k, row, number(v, unit).shown(formatFor(each(amounts, tidy)...)))
+				g.put(buyNeed+k, row, number(v, unit).shown(amountFormat(each(amounts, tidy)...)))
 			}
 		}
 		g.put(buyNeed+5, row, text(plain, unit))
@@ -121,6 +122,21 @@ func (l *layout) purchaseRows(g *grid, row int, p *costs.Purchase, total *float6
 		row++
 	}
 	return row
+}
+
+// mostAmountDigits is how many digits of an amount its column has room for.
+const mostAmountDigits = 6
+
+// amountFormat is the number format of the amounts of an item: as many decimals as the
+// smallest needs, as far as the largest has room for them.
+func amountFormat(amounts ...float64) string {
+	format := formatFor(amounts...)
+	whole := len(strconv.Itoa(int(slices.Max(amounts))))
+	_, digits, _ := strings.Cut(format, ".")
+	if room := max(0, mostAmountDigits-whole); len(digits) > room {
+		return strings.TrimSuffix("#,##0."+digits[:room], ".")
+	}
+	return format
 }
 
 func (l *layout) orderCells(g *grid, row int, p *costs.Purchase, o costs.Order, unit string) {

@@ -300,3 +300,27 @@ func TestItemsToBuyAreOnOneLine(t *testing.T) {
 		}
 	}
 }
+
+// Amounts of an item that differ a thousandfold fit in their columns, as those of drums of a
+// solvent of which some drops are lost.
+func TestAmountsToBuyHaveRoom(t *testing.T) {
+	for _, v := range [][2]float64{{299.3438, 0.027}, {1448.4321, 0.0113}, {48000, 0.5}, {99999.6, 0.004}} {
+		copied := *demo(t)
+		copied.Buying.Purchases = slices.Clone(copied.Buying.Purchases)
+		p := &copied.Buying.Purchases[0]
+		p.Process, p.Losses, p.ToBuy = v[0], v[1], v[0]+v[1]
+		m, err := newModel(&copied)
+		if err != nil {
+			t.Fatal(err)
+		}
+		for _, g := range lay(m).grids {
+			for r, row := range g.rows {
+				for c, x := range row {
+					if g.name == sheetBuying && c < len(g.widths) {
+						hasRoom(t, g, c+1, r+1, x)
+					}
+				}
+			}
+		}
+	}
+}
