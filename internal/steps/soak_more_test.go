@@ -166,9 +166,9 @@ func TestHeatOfSorption(t *testing.T) {
 	}
 	solvent := 790.0 * 0.95 / 46.07e-3 * 112.3 / 1e3 // J/K in a litre
 	byHand := o.Figure("water taken up") / 18.015 * (62e3 - 44.0e3) / (solvent + 0.3*1050)
-	near(t, "rise", o.Figure("temperature rise, no heat lost"), byHand, 0.03)
+	near(t, "rise", o.Figure("temperature rise if no heat is lost"), byHand, 0.03)
 	if len(o.Warnings) != 1 || !strings.Contains(o.Warnings[0], "portions") {
-		t.Errorf("a rise of %.3g K: %q", o.Figure("temperature rise, no heat lost"), o.Warnings)
+		t.Errorf("a rise of %.3g K: %q", o.Figure("temperature rise if no heat is lost"), o.Warnings)
 	}
 	tol := mixture(t, "toluene")
 	if o, err = steps.SoakOver(tol, litres(tol, 1, 480e-6), 150, day(3), sieve, stirred(t, "toluene")); err != nil || len(o.Warnings) != 0 {

@@ -19,7 +19,7 @@ func (b *bath) remark(o *Outcome, eq, timeS, doseKgPerM3, takenKg float64) error
 	o.Figures = append(o.Figures, Figure{"equilibrium if the sorbent were empty", "mg/kg", empty * mgPerKg})
 	o.RuledBy = b.ruledBy(o, eq, empty, timeS, doseKgPerM3)
 	if rise := b.riseK(o, takenKg); !math.IsNaN(rise) {
-		o.Figures = append(o.Figures, Figure{"temperature rise, no heat lost", "K", rise})
+		o.Figures = append(o.Figures, Figure{"temperature rise if no heat is lost", "K", rise})
 		if rise > cautionRiseK {
 			o.Warnings = append(o.Warnings, fmt.Sprintf("taking up %s of water warms the vessel by up to %.0f K: add the sorbent in portions, vessel vented", quantity.FormatMass(takenKg), rise))
 		}

@@ -156,7 +156,7 @@ var settingFigures = map[steps.Kind][]string{
 	steps.Trap:     {"boiling temperature at the start", "heat-up, each charge", "reflux, each charge", "aqueous layer, each charge", "drainings, each charge"},
 	steps.Forerun:  {"equilibrium stages of the column", "boiling temperature at the start", "boiling temperature at the end", "heat-up, each charge", "drawing off, each charge", "volume drawn off, each charge"},
 	steps.Salt:     {"stirred or stood", "rinse"},
-	steps.Soak:     {"vessels", "liquid height", "temperature rise, no heat lost"},
+	steps.Soak:     {"vessels", "liquid height", "temperature rise if no heat is lost"},
 	steps.Column:   {"superficial velocity", "contact time, empty bed", "pump time", "first runnings to return", "pressure drop"},
 	steps.Reactive: {"charges", "heat-up, each charge", "reflux, each charge", "distillation, each charge", "heel", "hydrogen while drying"},
 }
